@@ -1,0 +1,89 @@
+package model
+
+// Span is one step as it ran.
+type Span struct {
+	Step        *Step
+	StartS      float64 // from the start of the chain
+	EndS        float64
+	Reached     *bool      // for a step with Until: whether the slowest place reached it before the duration ran out
+	PropsAtC    float64    // temperature at which the properties were taken; meaningless if Props is constant
+	Props       Properties // used throughout the step
+	Films       []FilmUsed // one a face with its own surroundings, at least one
+	MediumFromC *float64   // lowest medium as typed, where it was raised to the freezing point; nil otherwise
+	MediumToC   *float64   // what it was raised to
+}
+
+// FilmUsed tells how a face met its surroundings in a step.
+type FilmUsed struct {
+	Face    *Face   // nil: the whole surface
+	FilmW   float64 // film coefficient, W/(m²·K); +Inf for held
+	TotalW  float64 // with wrap or contact in series
+	Typed   bool    // the film coefficient was typed by the user
+	Source  string  // of a stated coefficient or correlation, with the film conditions
+	Caution string  // e.g. that a stated coefficient is assumed; "" if none
+}
+
+// History is the temperature of every place in a food from the start of the chain to its end.
+// A prediction and a probe record are the same type.
+type History struct {
+	Spans    []Span
+	Recorded bool // a probe record: only the places of Points exist
+	// At gives the temperature in °C of a place at t seconds from the start of the chain:
+	// exact for a prediction (within ErrorK), straight segments for a record. Times outside the chain give its ends.
+	At func(p Place, t float64) float64
+	// Course is At for many rising times at once, and cheaper; it fills out, which is as long as times.
+	Course func(p Place, times, out []float64)
+	// MediumC gives the temperature of the main surroundings (the step's own row) at t; NaN where there is none.
+	// At the instant of a change: the one before the change.
+	MediumC func(t float64) float64
+	// HumidityPc gives the stated relative humidity (%) at t; NaN where none was stated.
+	HumidityPc func(t float64) float64
+
+	Points []Point // "centre" first, then the user's
+	ErrorK float64 // honest estimate of the largest error at any place, from a minute after each change of surroundings
+	Method string  // in words, for the report
+	// Bound says in words why temperatures are bounds from BoundFromS on (a chill medium raised to the freezing point:
+	// the true food is at or below them until it freezes); "" if they are not.
+	Bound      string
+	BoundFromS float64
+
+	scan *Scan
+	body body
+}
+
+// EndS is the end of the chain, in s.
+func (h *History) EndS() float64 {
+	if len(h.Spans) == 0 {
+		return 0
+	}
+	return h.Spans[len(h.Spans)-1].EndS
+}
+
+// Spot is a place of a scan.
+type Spot struct {
+	Place
+	Surface bool // it lies on the surface
+}
+
+// Scan is a first look at a history: places close enough that the least favourable one lies beside one of them,
+// instants close enough that a course is nearly straight between two. Decide with At, not with a scan.
+type Scan struct {
+	TimesS []float64
+	Spots  []Spot
+	C      [][]float64 // C[spot][time], °C
+}
+
+// Samples are what the results file holds.
+type Samples struct {
+	TimesS           []float64
+	Coldest, Hottest []float64 // over the whole product
+	Mean             []float64 // volume mean
+	ColdestAt        []Place
+	HottestAt        []Place
+	Points           [][]float64 // Points[i] belongs to History.Points[i]
+}
+
+// Options of Solve; the zero value is the usual.
+type Options struct {
+	ConductivityFactor float64 // multiplies every conductivity; 0 = 1
+}

@@ -1,0 +1,63 @@
+package model
+
+// Shape is an idealised form of a product.
+type Shape struct {
+	Name, Help string
+	Needs      []string // the size columns that it uses: Thickness, Width, Length, Diameter, Volume, Surface area
+	Faces      []*Face  // the faces that may differ; none: one surface
+	Refused    string   // why the method at hand cannot do it; "" if it can
+}
+
+// The shapes.
+var (
+	Slab          = &Shape{Name: "slab", Needs: []string{"Thickness"}, Faces: []*Face{Top, Underside}, Help: "wide and flat: trays, fillets; heat crosses the thickness"}
+	Cylinder      = &Shape{Name: "cylinder", Needs: []string{"Diameter"}, Help: "long and round: sausages, rolled joints; heat crosses the radius"}
+	Sphere        = &Shape{Name: "sphere", Needs: []string{"Diameter"}, Help: "dumplings, round pieces"}
+	ShortCylinder = &Shape{Name: "short cylinder", Needs: []string{"Diameter", "Length"}, Faces: []*Face{Top, Underside, Sides}, Help: "tins, pots, pies: heat crosses the ends and the curved face"}
+	Bar           = &Shape{Name: "bar", Needs: []string{"Thickness", "Width"}, Faces: []*Face{Top, Underside, Sides}, Help: "long and rectangular: heat crosses thickness and width"}
+	Brick         = &Shape{Name: "brick", Needs: []string{"Thickness", "Width", "Length"}, Faces: []*Face{Top, Underside, Sides, Ends}, Help: "joints, blocks, portions: heat crosses all six faces"}
+	Spheroid      = &Shape{Name: "spheroid", Needs: []string{"Thickness", "Diameter"}, Help: "eggs, potatoes (thickness along the axis)",
+		Refused: "a spheroid cannot be calculated yet"}
+	LayeredSlab = &Shape{Name: "layered slab", Help: "layers of different foods", Faces: []*Face{Top, Underside},
+		Refused: "a layered slab cannot be calculated yet"}
+	Stirred = &Shape{Name: "stirred", Needs: []string{"Volume", "Surface area"}, Help: "well mixed throughout: soups and sauces that are stirred all the time"}
+
+	Shapes = []*Shape{Slab, Cylinder, Sphere, ShortCylinder, Bar, Brick, Spheroid, LayeredSlab, Stirred}
+)
+
+// Surface is a kind of surroundings: the word of the column Surroundings.
+type Surface struct {
+	Name, Help string
+	Needs      []string // columns that must be filled, besides Temperature or Course
+	May        []string // columns that may be filled
+	NoMedium   bool     // it has no temperature
+	Published  string   // published film coefficients with their source, the low end first, in words
+}
+
+// The surroundings.
+var (
+	Film         = &Surface{Name: "film", Needs: []string{"Film coefficient"}, May: []string{"Air speed", "Relative humidity", "Wrap resistance"}, Help: "a film coefficient typed by you: it stands for everything that happens at the surface"}
+	StillAir     = &Surface{Name: "still air", May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"}, Help: "air moved only by its own warmth"}
+	MovingAir    = &Surface{Name: "moving air", Needs: []string{"Air speed"}, May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"}, Help: "air blown over the food"}
+	WaterBath    = &Surface{Name: "water bath", May: []string{"Film coefficient", "Wrap resistance"}, Help: "water left still"}
+	StirredWater = &Surface{Name: "stirred water", May: []string{"Film coefficient", "Wrap resistance"}, Help: "water kept moving"}
+	BoilingWater = &Surface{Name: "boiling water", May: []string{"Film coefficient", "Wrap resistance"}, Help: "water at the boil"}
+	Steam        = &Surface{Name: "steam", May: []string{"Film coefficient", "Wrap resistance"}, Help: "condensing steam, air vented"}
+	ContactPlate = &Surface{Name: "contact plate", Needs: []string{"Wrap resistance"}, Help: "a plate pressed on; its contact goes into Wrap resistance"}
+	Held         = &Surface{Name: "held", Help: "the surface itself is kept at the temperature"}
+	Insulated    = &Surface{Name: "insulated", NoMedium: true, Help: "no heat passes"}
+
+	Surfaces = []*Surface{Film, StillAir, MovingAir, WaterBath, StirredWater, BoilingWater, Steam, ContactPlate, Held, Insulated}
+)
+
+// Refusal is a process or food that conduction does not describe: what a person may type, why it is refused, what to do instead.
+type Refusal struct{ Words, Why, Instead string }
+
+// Refusals lists what the reader must refuse by name, in Surroundings, Stage and Process equipment.
+var Refusals = []Refusal{
+	{"vacuum", "vacuum cooling boils water out of the whole food; conduction does not describe it", "judge a probe record of the batch instead"},
+	{"microwave, radio frequency, ohmic", "the heat arises inside the food, very unevenly", "measure the coldest place with probes; only the standing time after a measured start may be predicted"},
+	{"retort, canning, autoclave", "commercial sterility needs a process authority and is outside this program", "ask a recognised process authority"},
+	{"fryer, frying, deep fat", "a moving crust with boiling water in it", "use probe records"},
+	{"baking, dough", "vapour moves in the pores and the food changes shape", "use probe records"},
+}

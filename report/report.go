@@ -1,0 +1,61 @@
+// Package report turns judged histories into documents: PDF, text, workbook and JSON.
+// It gets no clock and no file names from the machine: version, date and digest are passed in.
+package report
+
+import (
+	"time"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/rules"
+)
+
+// Head is what all documents of a run share.
+type Head struct {
+	Version       string
+	Date          time.Time
+	Plan          string // file or folder name
+	SHA256        string
+	Items         []Item  // the sheet Plan
+	Paper         string  // A4 or Letter
+	Fahrenheit    bool    // °F first
+	EveryS        float64 // interval of the courses, s
+	Problems      cell.Errors
+	NotCalculated []NotCalculated
+	Known         []KnownAnswer // solved by this very program
+	Products      int           // how many are calculated
+}
+
+// Item is a row of the sheet Plan.
+type Item struct {
+	At          cell.Ref
+	Item, Value string
+}
+
+// NotCalculated is a product that could not be calculated.
+type NotCalculated struct {
+	At      cell.Ref
+	Product string
+	Because cell.Errors
+}
+
+// KnownAnswer is a case with a known answer, as solved on this machine.
+type KnownAnswer struct {
+	Name, Source  string
+	Expected, Got float64
+	Allowance     float64
+	Unit          string
+	OK            bool
+}
+
+// Product is one product with everything that its documents show.
+type Product struct {
+	Product                                     model.Product
+	Steps                                       []model.Step
+	Family, RecipeVersion, Batch, Process, Note string
+	Readings                                    []cell.Reading
+	History                                     *model.History
+	Low                                         *model.History // second run at 0.9 k; nil if none was due
+	Samples                                     model.Samples  // every EveryS and at each change of step
+	Judgement                                   rules.Judgement
+}
