@@ -1,0 +1,228 @@
+package report
+
+import (
+	"fmt"
+	"math"
+	"strconv"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/rules"
+)
+
+// rounding is the way in which a result loses digits.
+type rounding int
+
+const (
+	nearest rounding = iota
+	down             // towards −∞
+	up               // towards +∞
+)
+
+// round rounds v to a number of decimals. Noise of the last binary digits (1e-7 of a step) moves nothing up or down,
+// so that exactly 120 stays 120.
+func (r rounding) round(v float64, decimals int) float64 {
+	scale := math.Pow(10, float64(decimals))
+	x := v * scale
+	switch {
+	case r == nearest || math.Abs(x-math.Round(x)) < 1e-7:
+		x = math.Round(x)
+	case r == down:
+		x = math.Floor(x)
+	case r == up:
+		x = math.Ceil(x)
+	}
+	return x/scale + 0 // never −0
+}
+
+// finite tells whether a number exists and may be written.
+func finite(v *float64) bool { return v != nil && !math.IsNaN(*v) && !math.IsInf(*v, 0) }
+
+// decimal writes v with a fixed number of decimals and a true minus sign.
+func decimal(v float64, decimals int, r rounding) string {
+	s := strconv.FormatFloat(r.round(v, decimals), 'f', decimals, 64)
+	return strings.Replace(s, "-", "−", 1)
+}
+
+// plain writes v with at most a number of decimals and no trailing noughts.
+func plain(v float64, decimals int, r rounding) string {
+	s := strconv.FormatFloat(r.round(v, decimals), 'f', -1, 64)
+	return strings.Replace(s, "-", "−", 1)
+}
+
+// fahrenheit turns °C into °F.
+func fahrenheit(c float64) float64 { return c*1.8 + 32 }
+
+// temperature writes a calculated temperature (°C) in the user's unit with the other in brackets: "74.1 °C (165.4 °F)".
+func (h *Head) temperature(c float64, r rounding) string {
+	inC, inF := decimal(c, 1, r)+" °C", decimal(fahrenheit(c), 1, r)+" °F"
+	return h.first(inC, inF)
+}
+
+// difference writes a difference (K) likewise: "5.0 °C (9.0 °F)".
+func (h *Head) difference(k float64, r rounding) string {
+	inC, inF := decimal(k, 1, r)+" °C", decimal(k*1.8, 1, r)+" °F"
+	return h.first(inC, inF)
+}
+
+// stated writes a temperature that a person stated (°C inside), not rounded beyond a hundredth: "75 °C (167 °F)".
+func (h *Head) stated(c float64) string {
+	return h.first(plain(c, 2, nearest)+" °C", plain(fahrenheit(c), 2, nearest)+" °F")
+}
+
+func (h *Head) first(inC, inF string) string {
+	if h.Fahrenheit {
+		return inF + " (" + inC + ")"
+	}
+	return inC + " (" + inF + ")"
+}
+
+// duration writes seconds as a person says them: "1 h 35 min", "3 h 05 min", "4 min 30 s", "2.5 s".
+// From an hour on it is rounded to the minute, below to the second, below ten seconds to a tenth.
+func duration(s float64, r rounding) string {
+	if s < 0 {
+		back := map[rounding]rounding{nearest: nearest, down: up, up: down}[r]
+		return "−" + duration(-s, back)
+	}
+	switch whole := r.round(s, 0); {
+	case s < 10:
+		return plain(s, 1, r) + " s"
+	case whole < 60:
+		return fmt.Sprintf("%.0f s", whole)
+	case whole < 3600:
+		m, rest := int(whole)/60, int(whole)%60
+		if rest == 0 {
+			return fmt.Sprintf("%d min", m)
+		}
+		return fmt.Sprintf("%d min %02d s", m, rest)
+	}
+	m := int64(r.round(s/60, 0))
+	if m%60 == 0 {
+		return fmt.Sprintf("%d h", m/60)
+	}
+	return fmt.Sprintf("%d h %02d min", m/60, m%60)
+}
+
+// mm writes a length (m) in mm.
+func mm(m float64) string { return plain(m*1000, 1, nearest) + " mm" }
+
+// placeWords says where a place lies, from the geometric centre of the shape.
+func placeWords(shape *model.Shape, p model.Place) string {
+	const near = 0.00005 // m: what a tenth of a millimetre rounds to nothing
+	var parts []string
+	radial := shape == model.Sphere || shape == model.Cylinder
+	axial := shape == model.ShortCylinder || shape == model.Spheroid
+	switch {
+	case math.Abs(p.UpM) < near:
+	case radial && shape == model.Cylinder:
+		parts = append(parts, mm(math.Abs(p.UpM))+" from the axis")
+	case radial:
+		parts = append(parts, mm(math.Abs(p.UpM))+" from the centre")
+	case p.UpM > 0:
+		parts = append(parts, mm(p.UpM)+" above the centre")
+	default:
+		parts = append(parts, mm(-p.UpM)+" below the centre")
+	}
+	switch {
+	case math.Abs(p.AcrossM) < near:
+	case axial:
+		parts = append(parts, mm(math.Abs(p.AcrossM))+" from the axis")
+	default:
+		parts = append(parts, mm(math.Abs(p.AcrossM))+" to the side")
+	}
+	if math.Abs(p.AlongM) >= near {
+		parts = append(parts, mm(math.Abs(p.AlongM))+" along the length")
+	}
+	if len(parts) == 0 {
+		return "centre"
+	}
+	return strings.Join(parts, ", ")
+}
+
+// needsMore tells whether a larger value is the better one for a finding; it decides which way a value is rounded.
+func needsMore(f *rules.Finding) bool {
+	l := f.Limit
+	if l == nil || l.Kind == nil {
+		return false
+	}
+	timed := l.TimeS != nil && *l.TimeS > 0
+	switch l.Kind.Name {
+	case "hold":
+		return timed || l.FromC != nil
+	case "hold table", "lethality", "humidity", "freeze":
+		return true
+	case "stay above":
+		return l.TimeS == nil
+	case "by the end":
+		return l.FromC != nil
+	case "duration":
+		return l.CompareTime == rules.AtLeast || l.CompareTime == rules.MoreThan
+	}
+	return false
+}
+
+// quantity writes the value of a finding rounded to the safe side, or what is required (asked: not rounded at all).
+func (h *Head) quantity(f *rules.Finding, v *float64, asked bool) string {
+	if !finite(v) {
+		return ""
+	}
+	r := up
+	if needsMore(f) {
+		r = down
+	}
+	switch f.Unit {
+	case "min":
+		if asked {
+			return plain(*v, 4, nearest) + " min"
+		}
+		if *v >= 60 {
+			return decimal(*v, 1, r) + " min (" + duration(*v*60, r) + ")"
+		}
+		return decimal(*v, 1, r) + " min"
+	case "°C":
+		if asked {
+			return h.stated(*v)
+		}
+		return h.temperature(*v, r)
+	case "K":
+		if asked {
+			return h.first(plain(*v, 2, nearest)+" °C", plain(*v*1.8, 2, nearest)+" °F")
+		}
+		return h.difference(*v, r)
+	case "log10":
+		return plain(*v, 2, r) + " log10"
+	case "1":
+		return plain(*v, 3, r)
+	}
+	return strings.TrimSpace(plain(*v, 3, r) + " " + f.Unit)
+}
+
+// citation is what the user typed about where a limit comes from.
+func citation(l *rules.Limit) string {
+	var parts []string
+	add := func(before, s string) {
+		if s = strings.TrimSpace(s); s != "" {
+			parts = append(parts, before+s)
+		}
+	}
+	add("", l.Code)
+	add("clause ", l.Clause)
+	add("edition ", l.Edition)
+	add("issued by ", l.IssuedBy)
+	s := strings.Join(parts, ", ")
+	if strings.TrimSpace(l.Code) == "" {
+		s = strings.TrimPrefix("no code named, "+s, ", ")
+		s = strings.TrimSuffix(s, ", ")
+	}
+	switch by, on := strings.TrimSpace(l.ConfirmedBy), strings.TrimSpace(l.ConfirmedOn); {
+	case by != "" && on != "":
+		s += "; confirmed by " + by + " on " + on
+	case by != "":
+		s += "; confirmed by " + by
+	case on != "":
+		s += "; confirmed on " + on
+	default:
+		s += "; not confirmed"
+	}
+	return s
+}
