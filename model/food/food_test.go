@@ -1,0 +1,380 @@
+package food
+
+import (
+	"encoding/csv"
+	"errors"
+	"math"
+	"os"
+	"path/filepath"
+	"strconv"
+	"strings"
+	"testing"
+
+	"pgregory.net/rapid"
+)
+
+// published reads testdata/published/NAME: heading and rows as maps.
+func published(t *testing.T, name string) []map[string]string {
+	t.Helper()
+	f, err := os.Open(filepath.Join("..", "..", "testdata", "published", name))
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	r := csv.NewReader(f)
+	r.Comment = '#'
+	rows, err := r.ReadAll()
+	if err != nil {
+		t.Fatal(err)
+	}
+	var out []map[string]string
+	for _, row := range rows[1:] {
+		m := map[string]string{}
+		for i, h := range rows[0] {
+			m[h] = row[i]
+		}
+		out = append(out, m)
+	}
+	if len(out) == 0 {
+		t.Fatalf("%s has no rows", name)
+	}
+	return out
+}
+
+func number(t *testing.T, s string) float64 {
+	t.Helper()
+	x, err := strconv.ParseFloat(s, 64)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return x
+}
+
+// near fails unless got is within tol of want.
+func near(t *testing.T, what string, got, want, tol float64) {
+	t.Helper()
+	if !(math.Abs(got-want) <= tol) {
+		t.Errorf("%s: %.9g, want %.9g ± %g", what, got, want, tol)
+	}
+}
+
+// parallel is the volume-weighted conductivity, the upper bound; the tests compare it with independent figures.
+func (m *mix) parallel(t float64) float64 {
+	k, total := 0.0, m.specificVolume(t)
+	for i, c := range components {
+		k += m.x[i] / at(c.density, t) / total * at(c.k, t)
+	}
+	return k
+}
+
+func TestPureWater(t *testing.T) {
+	// Arithmetic on the published polynomials (ASHRAE 2006, ch. 9, Table 2), worked out apart from this program; last digit.
+	m := mix{x: [6]float64{1}}
+	for _, c := range []struct{ t, rho, k, c float64 }{
+		{0, 997.18, 0.57109, 4176.2},
+		{20, 995.740, 0.603659, 4176.57},
+		{60, 983.842, 0.652707, 4190.45},
+		{100, 959.920, 0.680304, 4221.84},
+	} {
+		near(t, "density", m.density(c.t), c.rho, 0.0006)
+		near(t, "conductivity", m.conductivity(c.t), c.k, 6e-7)
+		near(t, "specific heat", m.specificHeat(c.t), c.c, 0.006)
+	}
+}
+
+func TestComponentModel(t *testing.T) {
+	// The same polynomials with volume-additive density and the rule of Levy, computed independently in Python; last digit printed.
+	meat := [6]float64{0.72, 0.21, 0.06, 0, 0, 0.01}
+	starchy := [6]float64{0.70, 0.03, 0.02, 0.22, 0.02, 0.01}
+	for _, c := range []struct {
+		name                          string
+		x                             [6]float64
+		t, rho, parallel, levy, c, al float64
+	}{
+		{"meat 5 °C", meat, 5, 1053.2902, 0.485449, 0.454714, 3560.126, 1.212621e-07},
+		{"meat 20 °C", meat, 20, 1050.6665, 0.505910, 0.474615, 3565.815, 1.266828e-07},
+		{"meat 70 °C", meat, 70, 1032.1134, 0.556832, 0.524977, 3595.632, 1.414612e-07},
+		{"starchy 5 °C", starchy, 5, 1106.9248, 0.495916, 0.470353, 3414.353, 1.244507e-07},
+		{"starchy 20 °C", starchy, 20, 1104.8271, 0.517977, 0.492883, 3422.541, 1.303469e-07},
+		{"starchy 70 °C", starchy, 70, 1087.2962, 0.572787, 0.549172, 3457.177, 1.460963e-07},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			m := mix{x: c.x}
+			near(t, "density", m.density(c.t), c.rho, 6e-5)
+			near(t, "parallel", m.parallel(c.t), c.parallel, 6e-7)
+			near(t, "conductivity", m.conductivity(c.t), c.levy, 6e-7)
+			near(t, "specific heat", m.specificHeat(c.t), c.c, 6e-4)
+			near(t, "diffusivity", m.conductivity(c.t)/m.density(c.t)/m.specificHeat(c.t), c.al, 6e-14)
+		})
+	}
+}
+
+func TestFoodsAsPredictedIndependently(t *testing.T) {
+	rows := published(t, "food_predictions.csv")
+	if len(rows) != len(Foods) {
+		t.Fatalf("%d predictions for %d foods", len(rows), len(Foods))
+	}
+	for _, r := range rows {
+		m, ok := Named(r["food"])
+		if !ok {
+			t.Errorf("no food %q", r["food"])
+			continue
+		}
+		if m.Composition == "" {
+			t.Errorf("%s: no composition in words", r["food"])
+		}
+		for _, at := range []string{"20", "60"} {
+			p := m.Props(number(t, at))
+			near(t, r["food"]+" density "+at, p.RhoKgM3, number(t, r["rho"+at]), 0.11)
+			near(t, r["food"]+" conductivity "+at, p.KWmK, number(t, r["k_levy"+at]), 1.1e-4)
+			near(t, r["food"]+" specific heat "+at, p.CJkgK, number(t, r["c"+at]), 1.1)
+		}
+	}
+}
+
+// Mistakes found in copies of the coefficients; each of these figures moves far beyond its tolerance if one of them slips in.
+func TestCopyErrors(t *testing.T) {
+	near(t, "fat conductivity at 60 °C (slope e-4, not e-3)", at(fat.k, 60), 0.163509, 1e-6)
+	near(t, "water specific heat at 20 °C (4176.2, not 4128.9)", at(water.c, 20), 4176.572, 1e-3)
+	near(t, "fat specific heat at 60 °C (slope 1.4733, not 0.14733)", at(fat.c, 60), 2055.315, 1e-3)
+	near(t, "carbohydrate specific heat at 60 °C (quadratic term negative)", at(carbohydrate.c, 60), 1645.166, 1e-3)
+	near(t, "ash specific heat at 60 °C (not its conductivity)", at(ash.c, 60), 1192.722, 1e-3)
+	near(t, "protein density at 60 °C (0.5184)", at(protein.density, 60), 1298.796, 1e-3)
+	// The diffusivity of fat printed in the same table, 0.098777 − 1.2569e-4·t mm²/s (from memory), agrees with k/(ρ·c) for e-4 only.
+	near(t, "fat diffusivity at 20 °C, mm²/s", 1e6*at(fat.k, 20)/at(fat.density, 20)/at(fat.c, 20), 0.0963, 0.003)
+}
+
+func TestPublishedSpecificHeats(t *testing.T) {
+	sum, worst, n := 0.0, 0.0, 0
+	for _, r := range published(t, "ashrae_specific_heat.csv") {
+		// The printed column counts fibre twice: once within total carbohydrate, once as fibre. To check the polynomials the test does the
+		// same; the program does not.
+		m := mix{}
+		for i, col := range []string{"water", "protein", "fat", "carbohydrate_total", "fibre", "ash"} {
+			m.x[i] = number(t, r[col]) / 100
+		}
+		d := m.specificHeat(20)/1000 - number(t, r["c"])
+		sum, worst, n = sum+d*d, math.Max(worst, math.Abs(d)), n+1
+		if math.Abs(d) > 0.0055 { // printed to 0.01
+			t.Logf("%s: %.4f, printed %s", r["food"], m.specificHeat(20)/1000, r["c"])
+		}
+	}
+	t.Logf("%d foods: rms %.4f, worst %.4f kJ/(kg·K)", n, math.Sqrt(sum/float64(n)), worst)
+	if rms := math.Sqrt(sum / float64(n)); rms > 0.004 {
+		t.Errorf("%d foods: rms %.4f kJ/(kg·K), want at most 0.004", n, rms)
+	}
+}
+
+func TestLevy(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		k1, k2 := rapid.Float64Range(0.05, 3).Draw(t, "k1"), rapid.Float64Range(0.05, 3).Draw(t, "k2")
+		v := rapid.Float64Range(0, 1).Draw(t, "share")
+		a, b := phase{k1, v}, phase{k2, 1 - v}
+		k := levy(a, b)
+		if math.Abs(k-levy(b, a)) > 1e-9*k {
+			t.Fatalf("not symmetric: %g and %g", k, levy(b, a))
+		}
+		lo, hi := maxwell(a, b), maxwell(b, a)
+		if lo > hi {
+			lo, hi = hi, lo
+		}
+		if k < lo*(1-1e-9) || k > hi*(1+1e-9) {
+			t.Fatalf("%g outside the Maxwell-Eucken bounds %g to %g", k, lo, hi)
+		}
+		if got := levy(phase{k1, 0}, phase{k2, 1}); math.Abs(got-k2) > 1e-9*k2 {
+			t.Fatalf("none of phase 1: %g, want %g", got, k2)
+		}
+		if got := levy(phase{k1, 1}, phase{k2, 0}); math.Abs(got-k1) > 1e-9*k1 {
+			t.Fatalf("nothing but phase 1: %g, want %g", got, k1)
+		}
+	})
+}
+
+func TestPublishedDiffusivities(t *testing.T) {
+	// Measured diffusivities, mm²/s (collected in "Foodstuff thermal diffusivity", Engineering ToolBox, 2020); published scatter is ±15 %.
+	for _, c := range []struct {
+		food        string
+		t, measured float64
+	}{
+		{"Beef, chuck for stew, lean+fat, raw", 50, 0.123},
+		{"Cod, Atlantic, raw", 5, 0.122},
+		{"Banana, raw", 5, 0.118},
+		{"Potato, mashed, with whole milk", 5, 0.123},
+		{"Strawberry, raw", 5, 0.127},
+	} {
+		m, ok := Named(c.food)
+		if !ok {
+			t.Fatalf("no food %q", c.food)
+		}
+		p := m.Props(c.t)
+		near(t, c.food, 1e6*p.KWmK/p.RhoKgM3/p.CJkgK, c.measured, 0.15*c.measured)
+	}
+}
+
+func TestFoods(t *testing.T) {
+	if len(Foods) < 20 {
+		t.Fatalf("%d foods, want at least 20", len(Foods))
+	}
+	seen := map[string]bool{}
+	for _, f := range Foods {
+		if seen[plain(f.Name)] {
+			t.Errorf("%s: twice", f.Name)
+		}
+		seen[plain(f.Name)] = true
+		if strings.TrimSpace(f.Source) == "" {
+			t.Errorf("%s: no source", f.Name)
+		}
+		if (f.FreezingC != nil) != (f.FreezingSource != "") {
+			t.Errorf("%s: freezing point and its source go together", f.Name)
+		}
+		if f.FreezingC != nil && !(*f.FreezingC > -5 && *f.FreezingC < 0) {
+			t.Errorf("%s: freezing point %g °C", f.Name, *f.FreezingC)
+		}
+		m, err := Compose(f.Name, f.Source, f.Composition)
+		if err != nil {
+			t.Errorf("%s: %v", f.Name, err)
+			continue
+		}
+		for _, tc := range []float64{LowC, 0, 20, 100, HighC} {
+			p := m.Props(tc)
+			if !(p.KWmK > 0.15 && p.KWmK < 0.8 && p.RhoKgM3 > 850 && p.RhoKgM3 < 1400 && p.CJkgK > 1800 && p.CJkgK < 4300) {
+				t.Errorf("%s at %g °C: %+v", f.Name, tc, p)
+			}
+		}
+	}
+}
+
+func TestNamed(t *testing.T) {
+	m, ok := Named("  COD,  atlantic, RAW ")
+	if !ok || m.Name != "Cod, Atlantic, raw" || m.FreezingC == nil || *m.FreezingC != -2.2 || !m.Composed {
+		t.Fatalf("%+v %v", m, ok)
+	}
+	// 28.0 °F in ASHRAE Handbook – Refrigeration (2006), chapter 9, Table 3.
+	near(t, "28 °F", *m.FreezingC, (28-32)/1.8, 0.03)
+	if !strings.Contains(m.Source, "15015") || !strings.Contains(m.Source, "Choi & Okos") {
+		t.Errorf("source %q", m.Source)
+	}
+	*m.FreezingC = 99
+	if again, _ := Named("Cod, Atlantic, raw"); *again.FreezingC != -2.2 {
+		t.Error("a caller changed the table")
+	}
+	if _, ok := Named("cod"); ok {
+		t.Error("part of a name must not match")
+	}
+	for _, f := range []string{"Milk, whole", "Egg, whole, raw", "Frankfurter, beef, unheated"} { // their freezing points are known from memory only
+		if m, ok := Named(f); !ok || m.FreezingC != nil {
+			t.Errorf("%s must come without a freezing point", f)
+		}
+	}
+}
+
+func TestNearest(t *testing.T) {
+	for _, c := range []struct{ typed, first string }{
+		{"cod", "Cod, Atlantic, raw"},
+		{"Salmon farmed", "Salmon, Atlantic, farmed, raw"},
+		{"stawberry", "Strawberry, raw"},
+		{"carrot boiled", "Carrots, boiled"},
+		{"chicken breast roast", "Chicken, breast, meat only, roasted"},
+	} {
+		got := Nearest(c.typed)
+		if len(got) == 0 || len(got) > 5 || got[0] != c.first {
+			t.Errorf("%q: %q, want %q first", c.typed, got, c.first)
+		}
+	}
+	if got := Nearest("xylophone"); len(got) != 0 {
+		t.Errorf("nothing is like a xylophone: %q", got)
+	}
+}
+
+func TestRefusedCompositions(t *testing.T) {
+	v := func(x float64) *float64 { return &x }
+	beef := Composition{WaterPc: 71.7, ProteinPc: 21.24, FatPc: 4.4, AshPc: 1.08}
+	with := func(change func(*Composition)) Composition { c := beef; change(&c); return c }
+	for _, c := range []struct {
+		name   string
+		source string
+		c      Composition
+		fields string
+	}{
+		{"sum 96.42", "label", with(func(c *Composition) { c.WaterPc -= 2 }), "Water"},
+		{"sum 103.42", "label", with(func(c *Composition) { c.FatPc += 5 }), "Water"},
+		{"negative fat", "label", with(func(c *Composition) { c.FatPc = -4.4 }), "Fat"},
+		{"not a number", "label", with(func(c *Composition) { c.AshPc = math.NaN() }), "Ash"},
+		{"two columns", "label", with(func(c *Composition) { c.ProteinPc, c.FibrePc = 121, -1 }), "Protein Fibre"},
+		{"no source", " ", beef, "Source"},
+		{"mostly air", "label", with(func(c *Composition) { c.AirByVolumePc = v(50.5) }), "Air by volume"},
+		{"air and density", "label", with(func(c *Composition) { c.AirByVolumePc, c.DensityKgM3 = v(5), v(1000) }), "Density"},
+		{"density zero", "label", with(func(c *Composition) { c.DensityKgM3 = v(0) }), "Density"},
+		{"density in g/cm³", "label", with(func(c *Composition) { c.DensityKgM3 = v(1.05) }), "Density"},
+		{"density of a stone", "label", with(func(c *Composition) { c.DensityKgM3 = v(1250) }), "Density"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			_, err := Compose("beef", c.source, c.c)
+			var faults Faults
+			if !errors.As(err, &faults) {
+				t.Fatalf("error %v, want Faults", err)
+			}
+			var fields []string
+			for _, f := range faults {
+				fields = append(fields, f.Field)
+				if f.Msg == "" || f.Hint == "" {
+					t.Errorf("%+v: message or hint missing", f)
+				}
+			}
+			if got := strings.Join(fields, " "); got != c.fields {
+				t.Errorf("faults in %q, want %q: %v", got, c.fields, err)
+			}
+		})
+	}
+}
+
+func TestAir(t *testing.T) {
+	v := func(x float64) *float64 { return &x }
+	beef := Composition{WaterPc: 71.7, ProteinPc: 21.24, FatPc: 4.4, AshPc: 1.08}
+	solid, err := Compose("beef", "label", beef)
+	if err != nil {
+		t.Fatal(err)
+	}
+	airy := beef
+	airy.AirByVolumePc = v(20)
+	foam, err := Compose("foam", "label", airy)
+	if err != nil {
+		t.Fatal(err)
+	}
+	s, f := solid.Props(20), foam.Props(20)
+	near(t, "density with 20 % air", f.RhoKgM3, 0.8*s.RhoKgM3, 1e-9)
+	near(t, "specific heat does not change", f.CJkgK, s.CJkgK, 1e-9)
+	// Maxwell-Eucken by hand, share 0.2 of air at 0.025 W/(m·K).
+	near(t, "conductivity with 20 % air", f.KWmK, s.KWmK*(2*s.KWmK+0.025-0.4*(s.KWmK-0.025))/(2*s.KWmK+0.025+0.2*(s.KWmK-0.025)), 1e-12)
+
+	weighed := beef
+	weighed.DensityKgM3 = v(f.RhoKgM3)
+	same, err := Compose("foam", "label", weighed)
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "the same air from its density", same.Props(60).KWmK, foam.Props(60).KWmK, 1e-12)
+
+	weighed.DensityKgM3 = v(s.RhoKgM3 * 1.03)
+	dense, err := Compose("beef", "label", weighed)
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "3 % too dense is no air", dense.Props(20).KWmK, s.KWmK, 1e-12)
+}
+
+func TestScaledSum(t *testing.T) {
+	// Beef, sirloin: ASHRAE Handbook – Refrigeration (2006), ch. 9, Table 3 adds up to 98.42 %.
+	m, err := Compose("beef", "ASHRAE", Composition{WaterPc: 71.7, ProteinPc: 21.24, FatPc: 4.4, AshPc: 1.08})
+	if err != nil {
+		t.Fatal(err)
+	}
+	full, err := Compose("beef", "ASHRAE", Composition{WaterPc: 71.7 / .9842, ProteinPc: 21.24 / .9842, FatPc: 4.4 / .9842, AshPc: 1.08 / .9842})
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "specific heat", m.Props(20).CJkgK, full.Props(20).CJkgK, 1e-9)
+	if want := "water 71.7 %, protein 21.24 %, fat 4.4 %, ash 1.08 % (adds up to 98.42 %, scaled to 100 %)"; m.Composition != want {
+		t.Errorf("in words %q, want %q", m.Composition, want)
+	}
+}
