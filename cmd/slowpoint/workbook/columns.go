@@ -1,0 +1,280 @@
+package workbook
+
+import (
+	"slowpoint/model"
+	"slowpoint/model/unit"
+	"slowpoint/rules"
+)
+
+// Sheet is one sheet of a plan. Reader, blank workbook and help take sheets and columns from the list Sheets and from nowhere else.
+type Sheet struct {
+	Name    string
+	Help    string // one line above the table in the blank workbook
+	Columns []*Column
+	Refused string // for a sheet that is recognised and cannot be used yet: why; "" if it is read
+}
+
+// Column is one column of a sheet.
+type Column struct {
+	Heading  string         // without its unit
+	Quantity *unit.Quantity // nil: words
+	Unit     string         // the unit of the blank workbook, one of Quantity's; "" for words and bare numbers
+	Needed   bool           // the column must be there, and filled in every row
+	Least    Least          // which numbers are refused
+	Choices  []string       // accepted words, for a drop-down list; nil: any words or a number
+	Free     bool           // Choices are suggestions: other words are accepted too
+	Help     string         // what to type, for the cell note and the manual
+}
+
+// Least says which numbers a column refuses.
+type Least int
+
+const (
+	Any         Least = iota // any finite number; a temperature not below −273.15 °C
+	NotNegative              // 0 or more
+	Positive                 // more than 0
+	Share                    // 0 … 100 %
+	UpToOne                  // more than 0, at most 1
+)
+
+// Title is the heading of the blank workbook, with its unit: "Thickness (mm)".
+func (c *Column) Title() string {
+	if c.Unit == "" {
+		return c.Heading
+	}
+	return c.Heading + " (" + c.Unit + ")"
+}
+
+// Column finds a column by its heading without unit, as it stands in the list; nil if there is none.
+func (s *Sheet) Column(heading string) *Column {
+	for _, c := range s.Columns {
+		if c.Heading == heading {
+			return c
+		}
+	}
+	return nil
+}
+
+// names lists a word of each value.
+func names[T any](list []T, name func(T) string) []string {
+	out := make([]string, len(list))
+	for i, v := range list {
+		out[i] = name(v)
+	}
+	return out
+}
+
+// The words of columns that are no values of their own in model or rules.
+var (
+	shapeNames   = names(model.Shapes, func(s *model.Shape) string { return s.Name })
+	surfaceNames = names(model.Surfaces, func(s *model.Surface) string { return s.Name })
+	stageNames   = names(model.Stages, func(s *model.Stage) string { return s.Name })
+	coverNames   = names(model.Covers, func(c *model.Cover) string { return c.Name })
+	faceNames    = names(model.Faces, func(f *model.Face) string { return f.Name })
+	flowNames    = names(model.Flows, func(f *model.Flow) string { return f.Name })
+	ruleNames    = names(rules.Kinds, func(k *rules.Kind) string { return k.Name })
+	compareWords = []string{"at least", "more than", "at most", "less than"} // rules.AtLeast, MoreThan, AtMost, LessThan
+	countWords   = []string{"total", "continuous", "once"}                   // rules.Total, Continuous, Once
+	whereWords   = []string{"every point", "surface", "centre", "medium"}
+	yesNo        = []string{"yes", "no"}
+)
+
+// publishedFilms is what the message about a missing film coefficient and the note of the column say, the low end of each first.
+const publishedFilms = "Published totals, low end first. Cold room, still air: 7.5 to 11.8 W/m²·K (Churchill-Chu cylinder 50–180 mm plus radiation 4.6–5.6). " +
+	"Air blown at 0.3 to 5 m/s over a 110 mm joint: 5.6 to 26.7 without radiation (Churchill and Bernstein 1977, J Heat Transfer 99:300). " +
+	"Cooked boneless ham of 2.3 kg in chilled air: 5.1 dry, 9.1 with evaporation (Ryland and others 2006, RURALS 1(1):1). " +
+	"Oven without fan: 15 to 23, 19.25 measured at roasting temperature (Chang, Carpenter and Toledo 1998, J Food Sci). " +
+	"Tunnel oven at low air speed: 20 to 48 (Baik and others 1999, J Food Sci 64(4):688). " +
+	"Contact grill, hamburger: 250 to 650 (Wichchukit, Zorrilla and Singh 2001; authors and year from memory). " +
+	"Boiling water and pure condensing steam: 2500 and more (Cengel, Heat Transfer, table of typical ranges)"
+
+// publishedSpeeds does the same for a missing air speed.
+const publishedSpeeds = "Take the lowest speed that you measured at the food, not the fan's rating. Published film coefficients of air blown over a 110 mm joint, without radiation: " +
+	"0.3 m/s 5.6, 0.5 m/s 7.3, 1 m/s 10.6, 1.2 m/s 11.7, 2 m/s 15.6, 3 m/s 19.7, 5 m/s 26.7 W/m²·K (Churchill and Bernstein 1977, J Heat Transfer 99:300, air at 10 °C)"
+
+// surroundings are the columns that Steps and Faces share.
+func surroundings() []*Column {
+	return []*Column{
+		{Heading: "Surroundings", Needed: true, Choices: surfaceNames, Help: "what the food stands in"},
+		{Heading: "Temperature", Quantity: &unit.Temperature, Unit: "°C", Help: "of the surroundings; blank with a Course, and for insulated"},
+		{Heading: "Course", Help: "a course of the sheet Courses, instead of one temperature"},
+		{Heading: "Temperature is", Choices: []string{"measured", "set-point"}, Help: "a set-point is not an air temperature; blank = set-point"},
+		{Heading: "Film coefficient", Quantity: &unit.Film, Unit: "W/m²·K", Least: Positive, Help: "heat taken or given by a square metre for each degree of difference; it stands for everything that happens at the surface. " + publishedFilms},
+		{Heading: "Air speed", Quantity: &unit.Speed, Unit: "m/s", Least: Positive, Help: "at the food, for moving air. " + publishedSpeeds},
+		{Heading: "Relative humidity", Quantity: &unit.Percent, Unit: "%", Least: Share, Help: "of the air, as measured or set"},
+		{Heading: "Radiating temperature", Quantity: &unit.Temperature, Unit: "°C", Help: "of walls or elements that the food sees"},
+		{Heading: "Emissivity", Quantity: &unit.Number, Least: UpToOne, Help: "of the food's surface, more than 0 and at most 1"},
+		{Heading: "Surface", Choices: []string{"dry", "wet"}, Help: "needed for air warmer than the food; dry means wrapped, lidded or truly dry"},
+		{Heading: "Cover", Choices: coverNames, Help: "what lies between surroundings and food; blank = open"},
+		{Heading: "Wrap resistance", Quantity: &unit.Resistance, Unit: "m²K/W", Least: Positive, Help: "of wrap, lid gap or contact; an air gap is about 0.04 m²K/W a millimetre"},
+	}
+}
+
+func join(lists ...[]*Column) []*Column {
+	var out []*Column
+	for _, l := range lists {
+		out = append(out, l...)
+	}
+	return out
+}
+
+// Sheets lists every sheet of a plan in the order of the workbook.
+var Sheets = []*Sheet{
+	{Name: "Plan", Help: "What the plan is and who answers for it", Columns: []*Column{
+		{Heading: "Item", Needed: true, Choices: PlanItems, Help: "what is told"},
+		{Heading: "Value", Help: "your answer"},
+	}},
+	{Name: "Products", Help: "A row is one product through one process", Columns: []*Column{
+		{Heading: "Product", Needed: true, Help: "a name of its own"},
+		{Heading: "Family", Help: "products that limits may name together"},
+		{Heading: "Recipe version"},
+		{Heading: "Batch"},
+		{Heading: "Process", Needed: true, Help: "a process of the sheet Steps"},
+		{Heading: "Shape", Needed: true, Choices: shapeNames, Help: "the shape that the product is calculated as"},
+		{Heading: "Thickness", Quantity: &unit.Length, Unit: "mm", Least: Positive, Help: "slab, bar, brick; along the axis of a spheroid"},
+		{Heading: "Width", Quantity: &unit.Length, Unit: "mm", Least: Positive, Help: "bar, brick"},
+		{Heading: "Length", Quantity: &unit.Length, Unit: "mm", Least: Positive, Help: "brick, short cylinder"},
+		{Heading: "Diameter", Quantity: &unit.Length, Unit: "mm", Least: Positive, Help: "cylinder, sphere, short cylinder, spheroid"},
+		{Heading: "Volume", Quantity: &unit.Volume, Unit: "L", Least: Positive, Help: "stirred"},
+		{Heading: "Surface area", Quantity: &unit.Area, Unit: "m²", Least: Positive, Help: "stirred"},
+		{Heading: "Food", Help: "a food of the sheet Foods or a built-in one; blank for a layered slab"},
+		{Heading: "Start temperature", Quantity: &unit.Temperature, Unit: "°C", Needed: true, Help: "of the whole product when its first step begins"},
+		{Heading: "Note"},
+	}},
+	{Name: "Layers", Help: "The layers of a layered slab, from the top", Refused: "a layered slab cannot be calculated yet", Columns: []*Column{
+		{Heading: "Product", Needed: true},
+		{Heading: "Layer", Quantity: &unit.Number, Needed: true, Least: Positive, Help: "1 = top"},
+		{Heading: "Food", Needed: true},
+		{Heading: "Thickness", Quantity: &unit.Length, Unit: "mm", Needed: true, Least: Positive},
+		{Heading: "Contact resistance below", Quantity: &unit.Resistance, Unit: "m²K/W", Least: NotNegative},
+	}},
+	{Name: "Foods", Help: "The plan's own foods: a composition, or measured properties", Columns: []*Column{
+		{Heading: "Food", Needed: true, Help: "a name; it wins over a built-in food of that name"},
+		{Heading: "Water", Quantity: &unit.Percent, Unit: "%", Least: Share, Help: "by mass; the parts of a composition make 97 to 103 % together"},
+		{Heading: "Protein", Quantity: &unit.Percent, Unit: "%", Least: Share},
+		{Heading: "Fat", Quantity: &unit.Percent, Unit: "%", Least: Share},
+		{Heading: "Carbohydrate", Quantity: &unit.Percent, Unit: "%", Least: Share, Help: "without fibre"},
+		{Heading: "Fibre", Quantity: &unit.Percent, Unit: "%", Least: Share},
+		{Heading: "Ash", Quantity: &unit.Percent, Unit: "%", Least: Share},
+		{Heading: "Air by volume", Quantity: &unit.Percent, Unit: "%", Least: Share, Help: "for a whipped or porous food; or a measured Density instead"},
+		{Heading: "At temperature", Quantity: &unit.Temperature, Unit: "°C", Help: "several rows of one food make a table"},
+		{Heading: "Conductivity", Quantity: &unit.Conductivity, Unit: "W/m·K", Least: Positive},
+		{Heading: "Density", Quantity: &unit.Density, Unit: "kg/m³", Least: Positive},
+		{Heading: "Specific heat", Quantity: &unit.SpecificHeat, Unit: "J/kg·K", Least: Positive},
+		{Heading: "Freezing point", Quantity: &unit.Temperature, Unit: "°C", Help: "where ice begins to form; needed where food gets near 0 °C"},
+		{Heading: "Water activity", Quantity: &unit.Number, Least: UpToOne},
+		{Heading: "Flows", Choices: flowNames, Help: "a liquid left still is not conduction; blank = no"},
+		{Heading: "Source", Needed: true, Help: "where the figures come from"},
+	}},
+	{Name: "Steps", Help: "One row a step, in order within its process", Columns: join([]*Column{
+		{Heading: "Process", Needed: true, Help: "the name that Products gives"},
+		{Heading: "Product", Help: "only for a row that replaces the process's row of that Step for one product"},
+		{Heading: "Step", Needed: true, Help: "a name of its own within the process"},
+		{Heading: "Stage", Needed: true, Choices: stageNames, Help: "what the step is for; limits name stages"},
+		{Heading: "Duration", Quantity: &unit.Duration, Unit: "min", Needed: true, Least: Positive, Help: "the longest that the step may last"},
+		{Heading: "Until slowest point reaches", Quantity: &unit.Temperature, Unit: "°C", Help: "the step ends when the coldest place (cook, reheat, thaw, hold hot) or the hottest place (other stages) reaches this, at the latest after Duration"},
+	}, surroundings(), []*Column{
+		{Heading: "Equipment"},
+		{Heading: "Load", Help: "how full, which position"},
+		{Heading: "Note"},
+	})},
+	{Name: "Faces", Help: "What differs on one face of the product", Columns: join([]*Column{
+		{Heading: "Process", Needed: true},
+		{Heading: "Product", Help: "only for one product of the process"},
+		{Heading: "Step", Needed: true},
+		{Heading: "Face", Needed: true, Choices: faceNames, Help: "top and underside close the thickness, sides the width, ends the length of a brick; the sides of a short cylinder are its curved face"},
+	}, surroundings())},
+	{Name: "Courses", Help: "Temperatures of surroundings that change in time: straight lines between rows", Columns: []*Column{
+		{Heading: "Course", Needed: true},
+		{Heading: "Time", Quantity: &unit.Duration, Unit: "min", Needed: true, Least: NotNegative, Help: "from the start of the step; the first row is 0"},
+		{Heading: "Temperature", Quantity: &unit.Temperature, Unit: "°C", Needed: true},
+		{Heading: "Relative humidity", Quantity: &unit.Percent, Unit: "%", Least: Share},
+	}},
+	{Name: "Limits", Help: "What has to be met: your own entry, with the code that says so", Columns: []*Column{
+		{Heading: "Limit", Needed: true, Help: "a name of its own"},
+		{Heading: "Rule", Needed: true, Choices: ruleNames, Help: "the kind of limit"},
+		{Heading: "Stage", Choices: stageNames, Free: true, Help: "blank = the whole chain; several joined by + (cook + rest); for delay a pair (cook > cool)"},
+		{Heading: "Applies to", Needed: true, Help: "all, family: NAME, or a product"},
+		{Heading: "Where", Choices: whereWords, Free: true, Help: "or the name of a row of Points; blank = every point"},
+		{Heading: "From", Quantity: &unit.Temperature, Unit: "°C"},
+		{Heading: "To", Quantity: &unit.Temperature, Unit: "°C"},
+		{Heading: "Time", Quantity: &unit.Duration, Unit: "min", Least: NotNegative, Help: "0 = reached once"},
+		{Heading: "Second time", Quantity: &unit.Duration, Unit: "min", Least: NotNegative},
+		{Heading: "Clock starts", Choices: []string{"crossing"}, Free: true, Help: "crossing, crossing of N °C, stage start: NAME, stage end: NAME"},
+		{Heading: "Counting", Choices: countWords, Help: "how periods add up; there is no default where a rule uses it"},
+		{Heading: "Compare", Choices: compareWords, Help: "for temperatures; blank = the rule's own"},
+		{Heading: "Compare time", Choices: compareWords, Help: "blank = at least for a needed time, at most for an allowed one"},
+		{Heading: "Reference temperature", Quantity: &unit.Temperature, Unit: "°C"},
+		{Heading: "z", Quantity: &unit.Difference, Unit: "°C difference", Least: Positive},
+		{Heading: "z above the reference temperature", Quantity: &unit.Difference, Unit: "°C difference", Least: Positive},
+		{Heading: "D", Quantity: &unit.Duration, Unit: "min", Least: Positive, Help: "time for one decimal reduction at the reference temperature"},
+		{Heading: "Log reductions", Quantity: &unit.Number, Least: Positive},
+		{Heading: "Allowance", Quantity: &unit.Difference, Unit: "°C difference", Least: NotNegative},
+		{Heading: "Humidity", Quantity: &unit.Percent, Unit: "%", Least: Share},
+		{Heading: "Share of stage", Quantity: &unit.Percent, Unit: "%", Least: Share},
+		{Heading: "Table", Help: "a table of the sheet Tables"},
+		{Heading: "Answer", Choices: yesNo, Free: true, Help: "for a stated limit; blank = cannot tell"},
+		{Heading: "Group", Help: "limits that belong together; see Groups"},
+		{Heading: "Level", Choices: []string{"must", "advice"}, Help: "blank = must"},
+		{Heading: "CCP"},
+		{Heading: "Hazard"},
+		{Heading: "Status", Choices: []string{"law", "guidance", "own study"}},
+		{Heading: "Code", Help: "the document that says so; missing = a warning on the front page"},
+		{Heading: "Clause", Help: "type it as text, so that the spreadsheet does not turn it into a date"},
+		{Heading: "Edition"},
+		{Heading: "Issued by"},
+		{Heading: "Confirmed by"},
+		{Heading: "Confirmed on"},
+		{Heading: "Note"},
+	}},
+	{Name: "Groups", Help: "How limits join; a group without a row is all of", Columns: []*Column{
+		{Heading: "Group", Needed: true},
+		{Heading: "Join", Needed: true, Choices: []string{"all of", "any of"}},
+		{Heading: "Within", Help: "another group"},
+	}},
+	{Name: "Tables", Help: "Time-temperature tables; any row may be met, rows are never interpolated", Columns: []*Column{
+		{Heading: "Table", Needed: true},
+		{Heading: "Temperature", Quantity: &unit.Temperature, Unit: "°C", Needed: true},
+		{Heading: "Time", Quantity: &unit.Duration, Unit: "min", Needed: true, Least: NotNegative, Help: "0 = met when reached once"},
+	}},
+	{Name: "Points", Help: "Extra places whose course you want to see, from the geometric centre", Columns: []*Column{
+		{Heading: "Product", Needed: true},
+		{Heading: "Point", Needed: true, Help: "a name, such as probe 1"},
+		{Heading: "Up", Quantity: &unit.Length, Unit: "mm", Help: "along the thickness, the axis or the radius; blank = 0"},
+		{Heading: "Across", Quantity: &unit.Length, Unit: "mm", Help: "along the width or, with an axis, along the radius; blank = 0"},
+		{Heading: "Along", Quantity: &unit.Length, Unit: "mm", Help: "along the length; blank = 0"},
+	}},
+	{Name: "Spread", Help: "Least and most of what varies, for the worst case", Refused: "worst cases by Spread cannot be calculated yet", Columns: []*Column{
+		{Heading: "Applies to", Needed: true, Help: "all, a family, product, process or process/step"},
+		{Heading: "Quantity", Needed: true, Choices: []string{"thickness", "width", "length", "diameter", "start temperature", "medium temperature", "film coefficient", "air speed", "conductivity", "specific heat", "density", "duration", "probe"}},
+		{Heading: "Minus", Free: true},
+		{Heading: "Plus", Free: true},
+		{Heading: "Basis", Needed: true, Help: "where the figure comes from"},
+	}},
+	{Name: "Records", Help: "Probe and air logs", Refused: "records cannot be read yet", Columns: []*Column{
+		{Heading: "Record", Needed: true}, {Heading: "Product"}, {Heading: "Process"}, {Heading: "File", Needed: true}, {Heading: "Sheet"},
+		{Heading: "Time column", Needed: true}, {Heading: "Temperature column", Needed: true}, {Heading: "What it measured", Needed: true},
+		{Heading: "Starts at"}, {Heading: "Date order"}, {Heading: "Time zone"}, {Heading: "Missing words"}, {Heading: "Sensor"}, {Heading: "Calibrated on"},
+		{Heading: "Correction", Quantity: &unit.Difference, Unit: "°C difference"}, {Heading: "Accuracy", Quantity: &unit.Difference, Unit: "°C difference", Least: NotNegative}, {Heading: "Note"},
+	}},
+}
+
+// PlanItems are the items of the sheet Plan.
+var PlanItems = []string{"Site", "Plan", "Edition", "Prepared for", "Prepared by", "Reviewed by", "Authority", "Altitude (m)", "Paper",
+	"Show temperatures in", "Decimal sign", "Date order", "Ignore columns"}
+
+// planChoices are the answers of the items that take a word of a list.
+var planChoices = map[string][]string{
+	"Paper": {"A4", "Letter"}, "Show temperatures in": {"°C", "°F"}, "Decimal sign": {"point", "comma"},
+	"Date order": {"day month year", "month day year", "year month day"},
+}
+
+// SheetNamed finds a sheet of the list by its exact name; nil if there is none.
+func SheetNamed(name string) *Sheet {
+	for _, s := range Sheets {
+		if s.Name == name {
+			return s
+		}
+	}
+	return nil
+}
