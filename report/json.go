@@ -1,0 +1,508 @@
+package report
+
+import (
+	"bufio"
+	"bytes"
+	"encoding/json"
+	"errors"
+	"io"
+	"math"
+	"strconv"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/rules"
+)
+
+// Schema names the form of results.json.
+const Schema = "slowpoint/results/1"
+
+// JSON writes results.json, one product after the other; none is kept in memory.
+// Problems and NotCalculated of the head may grow until Close.
+type JSON struct {
+	w        io.Writer
+	h        *Head
+	products spool
+	buf      *bufio.Writer // in front of the spool
+	n        int
+	line     []byte // scratch
+}
+
+// NewJSON makes a writer of results.json; nothing reaches w before Close.
+func NewJSON(w io.Writer, h *Head) *JSON {
+	j := &JSON{w: w, h: h}
+	j.buf = bufio.NewWriterSize(&j.products, 1<<16)
+	return j
+}
+
+// The parts of results.json. A number that does not exist is null.
+type (
+	planJSON struct {
+		Name   string          `json:"name"`
+		SHA256 string          `json:"sha256"`
+		Items  json.RawMessage `json:"items"`
+	}
+	problemJSON struct {
+		At      string `json:"at"`
+		Level   string `json:"level"`
+		Typed   string `json:"typed"`
+		Message string `json:"message"`
+		Hint    string `json:"hint"`
+	}
+	notCalculatedJSON struct {
+		Product string        `json:"product"`
+		At      string        `json:"at"`
+		Because []problemJSON `json:"because"`
+	}
+	knownJSON struct {
+		Case      string          `json:"case"`
+		Source    string          `json:"source"`
+		Expected  json.RawMessage `json:"expected"`
+		Got       json.RawMessage `json:"got"`
+		Allowance json.RawMessage `json:"allowance"`
+		Unit      string          `json:"unit"`
+		OK        bool            `json:"ok"`
+	}
+	filmJSON struct {
+		Face    string          `json:"face"`
+		Film    json.RawMessage `json:"film_W_m2K"` // null: the surface itself is held, or no heat passes
+		Total   json.RawMessage `json:"total_W_m2K"`
+		Typed   bool            `json:"typed"`
+		Source  string          `json:"source"`
+		Caution string          `json:"caution"`
+	}
+	stepJSON struct {
+		Step         string          `json:"step"`
+		Stage        string          `json:"stage"`
+		Start        json.RawMessage `json:"start_s"`
+		End          json.RawMessage `json:"end_s"`
+		Surroundings string          `json:"surroundings"`
+		Measured     bool            `json:"medium_measured"`
+		Until        json.RawMessage `json:"until_C"`
+		Reached      *bool           `json:"until_reached"`
+		PropsAt      json.RawMessage `json:"properties_at_C"`
+		K            json.RawMessage `json:"conductivity_W_mK"`
+		Rho          json.RawMessage `json:"density_kg_m3"`
+		C            json.RawMessage `json:"specific_heat_J_kgK"`
+		RaisedFrom   json.RawMessage `json:"medium_raised_from_C"`
+		RaisedTo     json.RawMessage `json:"medium_raised_to_C"`
+		Films        []filmJSON      `json:"films"`
+	}
+	findingJSON struct {
+		Limit           string          `json:"limit"`
+		Rule            string          `json:"rule"`
+		Level           string          `json:"level"`
+		Verdict         string          `json:"verdict"`
+		Value           json.RawMessage `json:"value"`
+		Required        json.RawMessage `json:"required"`
+		Unit            string          `json:"unit"`
+		MarginK         json.RawMessage `json:"margin_K"`
+		MarginS         json.RawMessage `json:"margin_s"`
+		AtS             json.RawMessage `json:"at_s"`
+		AtMM            json.RawMessage `json:"at_mm"`
+		Place           string          `json:"place"`
+		ClockStart      json.RawMessage `json:"clock_start_s"`
+		ClockEnd        json.RawMessage `json:"clock_end_s"`
+		Code            string          `json:"code"`
+		Clause          string          `json:"clause"`
+		Edition         string          `json:"edition"`
+		Cells           []string        `json:"cells"`
+		Why             string          `json:"why"`
+		Notes           []string        `json:"notes"`
+		LowConductivity bool            `json:"low_conductivity"`
+	}
+	groupJSON struct {
+		Group     string `json:"group"`
+		Join      string `json:"join"`
+		Verdict   string `json:"verdict"`
+		DecidedBy string `json:"decided_by"`
+	}
+	cautionJSON struct {
+		Key  string `json:"key"`
+		Text string `json:"text"`
+	}
+	readingJSON struct {
+		At     string `json:"at"`
+		Column string `json:"column"`
+		Typed  string `json:"typed"`
+		Used   string `json:"used"`
+		Why    string `json:"why"`
+	}
+)
+
+// Add writes one product; it may be forgotten afterwards.
+func (j *JSON) Add(p *Product) error {
+	if p == nil || p.History == nil {
+		return errors.New("results.json: a product without a history")
+	}
+	if j.n > 0 {
+		j.put(",\n")
+	}
+	j.n++
+	w := p.History
+	j.put("  {\n")
+	j.text("product", p.Product.Name)
+	j.text("process", p.Process)
+	j.text("family", p.Family)
+	j.text("recipe_version", p.RecipeVersion)
+	j.text("batch", p.Batch)
+	j.text("note", p.Note)
+	j.text("verdict", overall(p.Judgement.Verdict).String())
+	j.text("why", p.Judgement.Why)
+	j.text("method", w.Method)
+	j.value("recorded", w.Recorded)
+	j.value("error_K", figure(&w.ErrorK))
+	j.text("bound", w.Bound)
+	if w.Bound != "" {
+		j.value("bound_from_s", exact(&w.BoundFromS))
+	}
+	j.samples(p)
+	list(j, "steps", stepsOf(w.Spans), false)
+	list(j, "findings", findingsOf(p.Judgement.Findings), false)
+	list(j, "groups", groupsOf(p.Judgement.Groups), false)
+	list(j, "cautions", cautionsOf(Cautions(j.h, p)), false)
+	list(j, "input", readingsOf(p.Readings), true)
+	j.put("  }")
+	return j.buf.Flush()
+}
+
+// samples writes the courses.
+func (j *JSON) samples(p *Product) {
+	s, n := &p.Samples, len(p.Samples.TimesS)
+	j.column("t_s", s.TimesS, n, -1)
+	j.column("coldest_C", s.Coldest, n, 5)
+	j.column("hottest_C", s.Hottest, n, 5)
+	j.column("mean_C", s.Mean, n, 5)
+	medium := make([]float64, n)
+	for i, t := range s.TimesS {
+		medium[i] = math.NaN()
+		if p.History.MediumC != nil {
+			medium[i] = p.History.MediumC(t)
+		}
+	}
+	j.column("medium_C", medium, n, 5)
+	j.places("coldest_at_mm", s.ColdestAt, n)
+	j.places("hottest_at_mm", s.HottestAt, n)
+	j.put("    \"points\": [")
+	for i, pt := range p.History.Points {
+		if i > 0 {
+			j.put(",")
+		}
+		j.put("\n      {\"point\": ")
+		j.buf.Write(encode(pt.Name))
+		j.put(", \"at_mm\": ")
+		j.line = appendPlace(j.line[:0], pt.Place)
+		j.line = append(j.line, `, "C": `...)
+		var c []float64
+		if i < len(s.Points) {
+			c = s.Points[i]
+		}
+		j.line = append(appendNumbers(j.line, c, n, 5), '}')
+		j.buf.Write(j.line)
+	}
+	j.put("],\n")
+}
+
+// Close writes the document and lets go of what was spooled. Call it once, after the last product, also after an error.
+func (j *JSON) Close() error {
+	defer j.products.Close()
+	if err := j.buf.Flush(); err != nil {
+		return err
+	}
+	j.buf.Reset(j.w)
+	date := ""
+	if !j.h.Date.IsZero() {
+		date = j.h.Date.Format("2006-01-02")
+	}
+	j.put("{\n")
+	j.text("schema", Schema)
+	j.text("version", j.h.Version)
+	j.text("date", date)
+	j.value("plan", planJSON{Name: j.h.Plan, SHA256: j.h.SHA256, Items: itemsOf(j.h.Items)})
+	j.value("every_s", exact(&j.h.EveryS))
+	list(j, "problems", problemsOf(j.h.Problems), false)
+	list(j, "not_calculated", notCalculatedOf(j.h.NotCalculated), false)
+	list(j, "known_answers", knownOf(j.h.Known), false)
+	j.put("    \"products\": [")
+	if j.n > 0 {
+		j.put("\n")
+	}
+	if _, err := j.products.WriteTo(j.buf); err != nil {
+		return err
+	}
+	j.put("]\n}\n")
+	return j.buf.Flush()
+}
+
+func (j *JSON) put(s string)       { _, _ = j.buf.WriteString(s) } // the writer keeps the first error for Flush
+func (j *JSON) text(key, s string) { j.value(key, s) }
+
+func (j *JSON) value(key string, v any) {
+	j.put("    \"" + key + "\": ")
+	j.buf.Write(encode(v))
+	j.put(",\n")
+}
+
+// list writes an array, one element a line.
+func list[T any](j *JSON, key string, items []T, last bool) {
+	j.put("    \"" + key + "\": [")
+	for i := range items {
+		if i > 0 {
+			j.put(",")
+		}
+		j.put("\n      ")
+		j.buf.Write(encode(items[i]))
+	}
+	if j.put("]"); !last {
+		j.put(",")
+	}
+	j.put("\n")
+}
+
+func (j *JSON) column(key string, v []float64, n, decimals int) {
+	j.line = append(j.line[:0], "    \""+key+"\": "...)
+	j.line = append(appendNumbers(j.line, v, n, decimals), ",\n"...)
+	j.buf.Write(j.line)
+}
+
+func (j *JSON) places(key string, at []model.Place, n int) {
+	j.line = append(j.line[:0], "    \""+key+"\": ["...)
+	for i := 0; i < n; i++ {
+		if i > 0 {
+			j.line = append(j.line, ", "...)
+		}
+		if i < len(at) {
+			j.line = appendPlace(j.line, at[i])
+		} else {
+			j.line = append(j.line, "null"...)
+		}
+	}
+	j.buf.Write(append(j.line, "],\n"...))
+}
+
+// appendNumbers writes n numbers; those that v has not are null.
+func appendNumbers(b []byte, v []float64, n, decimals int) []byte {
+	b = append(b, '[')
+	for i := 0; i < n; i++ {
+		if i > 0 {
+			b = append(b, ", "...)
+		}
+		x := math.NaN()
+		if i < len(v) {
+			x = v[i]
+		}
+		b = appendNumber(b, x, decimals)
+	}
+	return append(b, ']')
+}
+
+// appendNumber writes x with at most so many decimals, no trailing noughts and no −0; decimals −1: every digit that x has.
+func appendNumber(b []byte, x float64, decimals int) []byte {
+	if math.IsNaN(x) || math.IsInf(x, 0) {
+		return append(b, "null"...)
+	}
+	start := len(b)
+	b = strconv.AppendFloat(b, x, 'f', decimals, 64)
+	if decimals > 0 {
+		for b[len(b)-1] == '0' {
+			b = b[:len(b)-1]
+		}
+		if b[len(b)-1] == '.' {
+			b = b[:len(b)-1]
+		}
+	}
+	if string(b[start:]) == "-0" {
+		return append(b[:start], '0')
+	}
+	return b
+}
+
+// appendPlace writes a place as [up, across, along] in mm.
+func appendPlace(b []byte, p model.Place) []byte {
+	b = append(b, '[')
+	b = append(appendNumber(b, p.UpM*1000, 4), ", "...)
+	b = append(appendNumber(b, p.AcrossM*1000, 4), ", "...)
+	return append(appendNumber(b, p.AlongM*1000, 4), ']')
+}
+
+// encode writes a value as JSON without escaping <, > and &.
+func encode(v any) []byte {
+	var b bytes.Buffer
+	e := json.NewEncoder(&b)
+	e.SetEscapeHTML(false)
+	if err := e.Encode(v); err != nil {
+		panic("results.json: " + err.Error()) // only strings, booleans and numbers made here: cannot happen
+	}
+	return bytes.TrimRight(b.Bytes(), "\n")
+}
+
+// exact, fixed and figure write a number that may not exist: with every digit, with so many decimals, with ten figures.
+func exact(v *float64) json.RawMessage { return fixed(v, -1) }
+
+func fixed(v *float64, decimals int) json.RawMessage {
+	if !finite(v) {
+		return nil
+	}
+	return appendNumber(nil, *v, decimals)
+}
+
+func figure(v *float64) json.RawMessage {
+	if !finite(v) {
+		return nil
+	}
+	return strconv.AppendFloat(nil, *v+0, 'g', 10, 64)
+}
+
+// overall is the verdict of a product: one of three words.
+func overall(v rules.Verdict) rules.Verdict {
+	if v == rules.NotApplicable {
+		return rules.CannotTell
+	}
+	return v
+}
+
+// join is the word of the column Join.
+func join(anyOf bool) string {
+	if anyOf {
+		return "any of"
+	}
+	return "all of"
+}
+
+func itemsOf(items []Item) json.RawMessage {
+	b, seen := []byte("{"), map[string]bool{}
+	for _, it := range items {
+		if seen[it.Item] {
+			continue
+		}
+		if len(seen) > 0 {
+			b = append(b, ", "...)
+		}
+		seen[it.Item] = true
+		b = append(append(b, encode(it.Item)...), ": "...)
+		b = append(b, encode(it.Value)...)
+	}
+	return append(b, '}')
+}
+
+func problemsOf(es cell.Errors) []problemJSON {
+	out := make([]problemJSON, 0, len(es))
+	for _, e := range es {
+		out = append(out, problemJSON{e.At.String(), e.Level.String(), e.Typed, e.Msg, e.Hint})
+	}
+	return out
+}
+
+func notCalculatedOf(ns []NotCalculated) []notCalculatedJSON {
+	out := make([]notCalculatedJSON, 0, len(ns))
+	for _, n := range ns {
+		out = append(out, notCalculatedJSON{n.Product, n.At.String(), problemsOf(n.Because)})
+	}
+	return out
+}
+
+func knownOf(ks []KnownAnswer) []knownJSON {
+	out := make([]knownJSON, 0, len(ks))
+	for i := range ks {
+		k := &ks[i]
+		out = append(out, knownJSON{k.Name, k.Source, figure(&k.Expected), figure(&k.Got), figure(&k.Allowance), k.Unit, k.OK})
+	}
+	return out
+}
+
+func stepsOf(spans []model.Span) []stepJSON {
+	out := make([]stepJSON, 0, len(spans))
+	for i := range spans {
+		sp := &spans[i]
+		s := stepJSON{Start: exact(&sp.StartS), End: exact(&sp.EndS), Reached: sp.Reached,
+			RaisedFrom: fixed(sp.MediumFromC, 5), RaisedTo: fixed(sp.MediumToC, 5), Films: []filmJSON{}}
+		if st := sp.Step; st != nil {
+			s.Step, s.Measured, s.Until = st.Name, st.Measured, fixed(st.UntilC, 5)
+			if st.Stage != nil {
+				s.Stage = st.Stage.Name
+			}
+			if st.Surface != nil {
+				s.Surroundings = st.Surface.Name
+			}
+		}
+		if pr := &sp.Props; pr.KWmK > 0 {
+			s.PropsAt, s.K, s.Rho, s.C = fixed(&sp.PropsAtC, 5), figure(&pr.KWmK), figure(&pr.RhoKgM3), figure(&pr.CJkgK)
+		}
+		for k := range sp.Films {
+			f := &sp.Films[k]
+			s.Films = append(s.Films, filmJSON{faceName(f.Face), figure(&f.FilmW), figure(&f.TotalW), f.Typed, f.Source, f.Caution})
+		}
+		out = append(out, s)
+	}
+	return out
+}
+
+// faceName is the word of the column Face, or what stands for the whole surface.
+func faceName(f *model.Face) string {
+	if f == nil {
+		return "whole surface"
+	}
+	return f.Name
+}
+
+func findingsOf(fs []rules.Finding) []findingJSON {
+	out := make([]findingJSON, 0, len(fs))
+	for i := range fs {
+		f := &fs[i]
+		one := findingJSON{Level: f.Level, Verdict: f.Verdict.String(), Value: figure(f.Value), Required: figure(f.Required), Unit: f.Unit,
+			MarginK: fixed(f.MarginK, 4), MarginS: fixed(f.MarginS, 4), AtS: exact(f.AtS), Place: f.PlaceName,
+			ClockStart: exact(f.ClockStartS), ClockEnd: exact(f.ClockEndS), Cells: cellNames(f.Cells), Why: f.Why,
+			Notes: append([]string{}, f.Notes...), LowConductivity: f.LowConductivity}
+		if f.Place != nil {
+			one.AtMM = appendPlace(nil, *f.Place)
+		}
+		if l := f.Limit; l != nil {
+			one.Limit, one.Rule, one.Code, one.Clause, one.Edition = l.Name, ruleName(l), l.Code, l.Clause, l.Edition
+		}
+		out = append(out, one)
+	}
+	return out
+}
+
+// ruleName is the word of the column Rule.
+func ruleName(l *rules.Limit) string {
+	if l == nil || l.Kind == nil {
+		return ""
+	}
+	return l.Kind.Name
+}
+
+// cellNames writes places as a spreadsheet user would; those made in code have none.
+func cellNames(refs []cell.Ref) []string {
+	out := make([]string, 0, len(refs))
+	for _, r := range refs {
+		if !r.IsZero() {
+			out = append(out, r.String())
+		}
+	}
+	return out
+}
+
+func groupsOf(gs []rules.GroupFinding) []groupJSON {
+	out := make([]groupJSON, 0, len(gs))
+	for _, g := range gs {
+		out = append(out, groupJSON{g.Group, join(g.AnyOf), g.Verdict.String(), g.DecidedBy})
+	}
+	return out
+}
+
+func cautionsOf(cs []Caution) []cautionJSON {
+	out := make([]cautionJSON, 0, len(cs))
+	for _, c := range cs {
+		out = append(out, cautionJSON{c.Key, c.Text})
+	}
+	return out
+}
+
+func readingsOf(rs []cell.Reading) []readingJSON {
+	out := make([]readingJSON, 0, len(rs))
+	for _, r := range rs {
+		out = append(out, readingJSON{r.At.String(), r.Column, r.Typed, r.Used, r.Why})
+	}
+	return out
+}
