@@ -1,21 +1,94 @@
 package rules
 
-// Kind is a kind of limit: the word of the column Rule.
+// Kind is a kind of limit: the word of the column Rule. Adding one takes its file, its line in Kinds and its test.
 type Kind struct {
 	Name, Help string
 	Needs      [][]string // each entry: columns of which one must be filled ("From" or "To")
-	May        []string   // further columns that may be filled, besides those every limit has
+	May        []string   // further columns that may be filled, besides those of Always
 	Unit       string     // of value and required; "" where it depends
-	judge      func(*Limit, *view) Finding
+	judge      func(v *view) Finding
 }
 
-// view is a history seen through one limit. (To be filled in.)
-type view struct{}
+// Always lists the columns of the sheet Limits that every kind may fill. All others a kind must name in Needs or May.
+var Always = []string{"Limit", "Rule", "Applies to", "Group", "Level", "CCP", "Hazard", "Status", "Code", "Clause", "Edition",
+	"Issued by", "Confirmed by", "Confirmed on", "Note"}
 
-// Kinds lists the kinds of limit; one file each.
-var Kinds = []*Kind{}
+// Kinds lists the kinds of limit.
+var Kinds = []*Kind{Hold, HoldTable, Lethality, CoolWithin, HeatWithin, Band, StayAbove, StayBelow, Outside, ByTheEnd,
+	Delay, Duration, Falling, FreezeHold, Humidity, Stated}
 
-// Judge holds a subject against the limits that apply to it, in the order given.
-func Judge(limits []Limit, groups []Group, s Subject) Judgement {
-	return Judgement{Why: "no limit judged"}
+// Named finds a kind by its word; nil if there is none.
+func Named(word string) *Kind {
+	for _, k := range Kinds {
+		if same(k.Name, word) {
+			return k
+		}
+	}
+	return nil
+}
+
+// Uses tells whether a column (heading without unit) may be filled for the kind.
+func (k *Kind) Uses(column string) bool {
+	for _, list := range append([][]string{Always, k.May}, k.Needs...) {
+		for _, c := range list {
+			if same(c, column) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// Fault is something wrong with a limit as a whole that Needs and May cannot say: the column, what is wrong, how to mend it.
+type Fault struct{ Column, Msg, Hint string }
+
+// Faults tells what keeps a limit from being judged, given that the columns of Needs are filled. The reader reports them at
+// their cells; Judge answers "cannot tell" to a limit that has one.
+func (l *Limit) Faults() []Fault {
+	var fs []Fault
+	add := func(column, msg, hint string) { fs = append(fs, Fault{column, msg, hint}) }
+	k := l.Kind
+	one := k == Hold || k == StayAbove || k == StayBelow || k == ByTheEnd
+	between := k == Band || k == Outside
+	switch {
+	case one && l.FromC != nil && l.ToC != nil:
+		add("To", "From and To are both filled, and "+k.Name+" takes one of them", "clear one, or write two limits")
+	case between && l.FromC != nil && l.ToC != nil && !(*l.FromC < *l.ToC):
+		add("To", "To must be warmer than From: the limit is about the time between the two", "swap From and To")
+	case k == CoolWithin && l.FromC != nil && l.ToC != nil && !(*l.ToC < *l.FromC):
+		add("To", "To must be colder than From: the food cools from From down to To", "swap From and To")
+	case k == HeatWithin && l.FromC != nil && l.ToC != nil && !(*l.ToC > *l.FromC):
+		add("To", "To must be warmer than From: the food is heated from From up to To", "swap From and To")
+	}
+	if k == CoolWithin || k == HeatWithin || k == ByTheEnd {
+		l.clockFaults(add)
+	}
+	if k == Lethality && l.TimeS != nil && (l.DS != nil || l.Logs != nil) {
+		add("D", "Time and D with Log reductions are two ways to set one target", "clear Time, or clear D and Log reductions")
+	}
+	if k == Delay && (len(l.Stages) != 1 || l.Then == nil) {
+		add("Stage", "delay needs a pair of stages", "write the pair as cook > cool")
+	}
+	if k == HoldTable && l.Table != nil && len(l.Table.Rows) == 0 {
+		add("Table", "the table has no rows", "add its rows to the sheet Tables")
+	}
+	return fs
+}
+
+// clockFaults checks Clock starts against From and Time.
+func (l *Limit) clockFaults(add func(column, msg, hint string)) {
+	c := l.Clock
+	event := c.Start != nil || c.End != nil
+	switch {
+	case l.Kind == ByTheEnd:
+		if set := event || c.Crossing || c.AtC != nil; set != (l.TimeS != nil) {
+			add("Clock starts", "by the end takes Time and Clock starts together, or neither", "fill both, or clear both for the end of the stage")
+		}
+	case c.Crossing && c.AtC == nil && l.FromC == nil:
+		add("From", "a clock that starts at the crossing needs From, the temperature that is crossed", "fill From, or write crossing of 60 °C")
+	case event && l.FromC != nil:
+		add("From", "the clock starts with a stage, so From is not used", "clear From, or write crossing in Clock starts")
+	case c.AtC != nil && l.FromC != nil && *c.AtC != *l.FromC:
+		add("From", "Clock starts names the temperature that is crossed, and From names another", "clear From")
+	}
 }
