@@ -1,0 +1,140 @@
+package unit
+
+import (
+	"math"
+	"strings"
+	"testing"
+)
+
+func TestParse(t *testing.T) {
+	mm, degC, minute := Length.Unit("mm"), Temperature.Unit("°C"), Duration.Unit("min")
+	for _, c := range []struct {
+		name    string
+		q       *Quantity
+		text    string
+		heading *Unit
+		d       Decimal
+		want    float64
+		says    string // part of the mistake; "" = none
+	}{
+		{"plain", &Length, "25", mm, Unsure, 0.025, ""},
+		{"fraction with unit", &Length, "1 1/4 in", mm, Unsure, 1.25 * 0.0254, ""}, // 1 in = 25.4 mm exactly (international yard, 1959)
+		{"vulgar fraction", &Length, "1¼ in", mm, Unsure, 1.25 * 0.0254, ""},
+		{"vulgar fraction and mark of inches", &Length, "¾\"", nil, Unsure, 0.75 * 0.0254, ""},
+		{"no unit anywhere", &Length, "25", nil, Unsure, 0, "no unit"},
+		{"wrong quantity", &Length, "25 kg", mm, Unsure, 0, "unit of length"},
+		{"Fahrenheit in the cell wins", &Temperature, "165 °F", degC, Unsure, (165 - 32) / 1.8, ""},
+		{"130 °F exactly", &Temperature, "130 F", degC, Unsure, (130 - 32) / 1.8, ""},
+		{"kelvin", &Temperature, "350 K", degC, Unsure, 0, "kelvin"},
+		{"minus sign of typesetters", &Temperature, "−18 °C", degC, Unsure, -18, ""},
+		{"difference of 10 °F", &Difference, "10 °F", Difference.Unit("°C difference"), Unsure, 10 / 1.8, ""},
+		{"hours and minutes", &Duration, "1 h 30 min", minute, Unsure, 5400, ""},
+		{"hours and bare minutes", &Duration, "1h30", minute, Unsure, 5400, ""},
+		{"units must fall", &Duration, "30 min 1 h", minute, Unsure, 0, "not a number"},
+		{"seconds", &Duration, "90 s", minute, Unsure, 90, ""},
+		{"clock without form", &Duration, "2:05", minute, Unsure, 0, "hours and minutes or minutes and seconds"},
+		{"clock h:mm", &Duration, "2:05", Duration.Unit("h:mm"), Unsure, 7500, ""},
+		{"clock mm:ss", &Duration, "2:05", Duration.Unit("mm:ss"), Unsure, 125, ""},
+		{"three parts", &Duration, "1:02:03", minute, Unsure, 3723, ""},
+		{"bare number under h:mm", &Duration, "2", Duration.Unit("h:mm"), Unsure, 0, "form h:mm"},
+		{"decimal comma", &Length, "1,5", mm, Unsure, 0.0015, ""},
+		{"ambiguous", &Length, "1,234", mm, Unsure, 0, "1234 or as 1.234"},
+		{"ambiguous point", &Length, "1.234", mm, Unsure, 0, "1234 or as 1.234"},
+		{"comma by the file", &Length, "1,234", mm, Comma, 0.001234, ""},
+		{"thousands by the file", &Length, "1,234", mm, Point, 1.234, ""},
+		{"against the file", &Length, "1,5", mm, Point, 0, "decimal comma"},
+		{"both signs", &Length, "1.234,5", mm, Unsure, 1.2345, ""},
+		{"thousands by narrow blank", &Length, "1\u202f234,5", mm, Unsure, 1.2345, ""},
+		{"leading zero is no thousand", &Length, "0,234", mm, Unsure, 0.000234, ""},
+		{"exponent", &Length, "1e-1", mm, Unsure, 0.0001, ""},
+		{"NaN", &Length, "NaN", mm, Unsure, 0, "not a number"},
+		{"Inf", &Length, "Inf", mm, Unsure, 0, "not a number"},
+		{"overflow", &Length, "1e400", mm, Unsure, 0, "not a number"},
+		{"comparison", &Temperature, "≥75", degC, Unsure, 0, "comparison"},
+		{"two numbers", &Length, "20 30", mm, Unsure, 0, "none"},
+		{"range", &Length, "20-30", mm, Unsure, 0, "none"},
+		{"division by zero", &Length, "1/0 in", mm, Unsure, 0, "not a number"},
+		{"unit of a bare number", &Number, "3 kg", &Number.Units[0], Unsure, 0, "plain number"},
+		{"per cent in the cell", &Percent, "65 %", &Percent.Units[0], Unsure, 65, ""},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			v, m := c.q.Parse(c.text, c.heading, c.d)
+			switch {
+			case c.says == "" && m != nil:
+				t.Fatalf("%q: %v", c.text, m)
+			case c.says != "" && m == nil:
+				t.Fatalf("%q was read as %g", c.text, v.Computed)
+			case c.says != "" && !strings.Contains(m.Error(), c.says):
+				t.Fatalf("%q: %v, want %q", c.text, m, c.says)
+			case math.Abs(v.Computed-c.want) > 1e-12*math.Abs(c.want):
+				t.Fatalf("%q = %.17g, want %.17g", c.text, v.Computed, c.want)
+			}
+		})
+	}
+}
+
+func TestSpellings(t *testing.T) {
+	for _, c := range []struct {
+		q      *Quantity
+		names  []string
+		prints string
+	}{
+		{&Film, []string{"W/m2K", "W/(m2 K)", "W/m²·K", "W/(m²·K)", "W/m^2 K", "W m⁻² K⁻¹"}, "W/m²·K"},
+		{&Temperature, []string{"degC", "°C", "℃", "º C", "c"}, "°C"},
+		{&Resistance, []string{"m²K/W", "m2 K/W", "m²·K/W"}, "m²K/W"},
+		{&Conductivity, []string{"W/mK", "W/(m·K)", "W/m·K"}, "W/m·K"},
+		{&Duration, []string{"min", "min.", "Minutes"}, "min"},
+	} {
+		for _, n := range c.names {
+			if u := c.q.Unit(n); u == nil || u.Name() != c.prints {
+				t.Errorf("%s: %q is %v, want %s", c.q.Name, n, u, c.prints)
+			}
+		}
+	}
+}
+
+// Every unit goes there and back, and no spelling belongs to two units of one quantity.
+func TestUnits(t *testing.T) {
+	for _, q := range []Quantity{Temperature, Difference, Length, Duration, Volume, Area, Film, Speed, Conductivity, Density, SpecificHeat, Resistance, Percent, Number} {
+		owner := map[string]string{}
+		for _, u := range q.Units {
+			if got := u.Out(u.In(12.3)); math.Abs(got-12.3) > 1e-12 {
+				t.Errorf("%s %s: 12.3 comes back as %.17g", q.Name, u.Name(), got)
+			}
+			for _, n := range u.Names {
+				if o, ok := owner[plainSpelling(n)]; ok && o != u.Name() {
+					t.Errorf("%s: %q is both %s and %s", q.Name, n, o, u.Name())
+				}
+				owner[plainSpelling(n)] = u.Name()
+			}
+		}
+	}
+}
+
+func TestEvidence(t *testing.T) {
+	for text, want := range map[string]Decimal{"1,5": Comma, "0.5": Point, "1,234": Unsure, "1.234": Unsure, "1.234,5": Comma, "1,234.5": Point, "12": Unsure, "1.234.567": Comma, "1 1/2": Unsure, "abc": Unsure} {
+		if got := Evidence(text); got != want {
+			t.Errorf("%q: %v, want %v", text, got, want)
+		}
+	}
+}
+
+func FuzzCell(f *testing.F) {
+	for _, s := range []string{"1 1/4 in", "1¼", "2:05", "1 h 30 min", "1,234", "165 °F", "NaN", "1e999", "", "½½", "-", "1/0", "1.2.3,4"} {
+		f.Add(s, 0)
+	}
+	qs := []Quantity{Temperature, Difference, Length, Duration, Film, Percent, Number}
+	f.Fuzz(func(t *testing.T, s string, d int) {
+		for i := range qs {
+			q := &qs[i]
+			v, m := q.Parse(s, &q.Units[len(q.Units)-1], Decimal(uint(d)%3))
+			if m == nil && (math.IsNaN(v.Computed) || math.IsInf(v.Computed, 0)) {
+				t.Fatalf("%s %q gives %g", q.Name, s, v.Computed)
+			}
+			if m != nil && (m.Says == "" || m.Mend == "") {
+				t.Fatalf("%s %q: empty mistake", q.Name, s)
+			}
+		}
+		Evidence(s)
+	})
+}
