@@ -1,18 +1,381 @@
 package model
 
-// body is the geometry that a history looks for places in. (Filled by Solve; a record has none.)
+import (
+	"math"
+	"sort"
+)
+
+// body is the geometry of a history: between places in the food and coordinates on its axes, and where to look.
+// A record has none.
 type body struct {
-	look func(h *History, from Spot, surfaceOnly bool, score func(Place) float64) (Place, float64)
+	kinds [3]axisKind
+	radii [3]float64
+	nodes *nodes
+	order []int // nodes from the centre outwards
+	buf   []float64
+}
+
+func newBody(kinds [3]axisKind, radii [3]float64, nd *nodes) *body {
+	b := &body{kinds: kinds, radii: radii, nodes: nd, order: make([]int, nd.count()), buf: make([]float64, nd.count())}
+	far := make([]float64, nd.count())
+	for i := range b.order {
+		b.order[i] = i
+		x := b.node(i)
+		for a := range x {
+			far[i] += x[a] * x[a] * radii[a] * radii[a]
+		}
+	}
+	sort.SliceStable(b.order, func(i, j int) bool { return far[b.order[i]] < far[b.order[j]] })
+	return b
+}
+
+// index gives the node's number on each axis.
+func (b *body) index(i int) (g [3]int) {
+	n1, n2 := len(b.nodes.x[1]), len(b.nodes.x[2])
+	return [3]int{i / (n1 * n2), i / n2 % n1, i % n2}
+}
+
+// node gives the coordinates of a node.
+func (b *body) node(i int) coord {
+	g := b.index(i)
+	return coord{b.nodes.x[0][g[0]], b.nodes.x[1][g[1]], b.nodes.x[2][g[2]]}
+}
+
+// coord turns a place into coordinates, moved into the food if it lies outside.
+func (b *body) coord(p Place) coord {
+	x := coord{p.UpM, p.AcrossM, p.AlongM}
+	for a := range x {
+		switch b.kinds[a] {
+		case lumped:
+			x[a] = 0
+		case planeFull:
+			x[a] = math.Max(-1, math.Min(1, x[a]/b.radii[a]))
+		default:
+			x[a] = math.Min(1, math.Abs(x[a])/b.radii[a])
+		}
+	}
+	return x
+}
+
+// place turns coordinates into a place.
+func (b *body) place(x coord) Place {
+	return Place{UpM: x[0] * b.radii[0], AcrossM: x[1] * b.radii[1], AlongM: x[2] * b.radii[2]}
+}
+
+// surface tells whether coordinates lie on the surface.
+func (b *body) surface(x coord) bool {
+	any := false
+	for a := range x {
+		if b.kinds[a] != lumped {
+			any = true
+			if x[a] == 1 || x[a] == -1 && b.kinds[a] == planeFull {
+				return true
+			}
+		}
+	}
+	return !any
+}
+
+// range_ gives the coldest and hottest node: enough for choosing properties.
+func (b *body) range_(s snapshot) (lo, hi float64) {
+	s.grid(b.buf)
+	lo, hi = b.buf[0], b.buf[0]
+	for _, c := range b.buf {
+		lo, hi = math.Min(lo, c), math.Max(hi, c)
+	}
+	return lo, hi
+}
+
+// extreme is a coldest or hottest place.
+type extreme struct {
+	c float64 // °C
+	x coord
+}
+
+// flatK is how much colder or hotter a place must be to be preferred to one nearer the centre, K.
+const flatK = 1e-7
+
+// extremes finds the coldest and hottest place anywhere in the food: among the nodes first, then along the axes between them.
+func (b *body) extremes(s snapshot) (low, high extreme) {
+	s.grid(b.buf)
+	lo, hi := b.order[0], b.order[0]
+	for _, i := range b.order[1:] {
+		if b.buf[i] < b.buf[lo]-flatK {
+			lo = i
+		}
+		if b.buf[i] > b.buf[hi]+flatK {
+			hi = i
+		}
+	}
+	return b.polish(s, lo, 1), b.polish(s, hi, -1)
+}
+
+// polish moves from a node to the extreme beside it; sign 1 looks for the coldest, -1 for the hottest.
+func (b *body) polish(s snapshot, node int, sign float64) extreme {
+	e := extreme{b.buf[node], b.node(node)}
+	g := b.index(node)
+	var r, phi, dphi [maxDegrees]float64
+	stride := [3]int{len(b.nodes.x[1]) * len(b.nodes.x[2]), len(b.nodes.x[2]), 1}
+	for sweep := 0; sweep < 3; sweep++ {
+		moved := false
+		for a := range g {
+			if b.kinds[a] == lumped {
+				continue
+			}
+			xs := b.nodes.x[a]
+			lo, hi := max(g[a]-1, 0), min(g[a]+1, len(xs)-1)
+			if sweep == 0 {
+				here := b.buf[node]
+				if math.Abs(b.buf[node+(lo-g[a])*stride[a]]-here) <= flatK && math.Abs(b.buf[node+(hi-g[a])*stride[a]]-here) <= flatK {
+					continue // flat: stay where the centre is nearest
+				}
+			}
+			n := len(b.nodes.phi[a]) / len(xs)
+			bs := baseOf(b.kinds[a], n)
+			s.slice(a, e.x, r[:n])
+			slope := func(x float64) float64 {
+				bs.values(x, phi[:n], dphi[:n])
+				d := 0.0
+				for m := 0; m < n; m++ {
+					d += r[m] * dphi[m]
+				}
+				return sign * d
+			}
+			x := zeroOfSlope(slope, xs[lo], xs[hi], e.x[a])
+			bs.values(x, phi[:n], nil)
+			c := 0.0
+			for m := 0; m < n; m++ {
+				c += r[m] * phi[m]
+			}
+			if sign*c < sign*e.c-1e-12 {
+				moved = moved || math.Abs(x-e.x[a]) > 1e-4 && sign*(e.c-c) > 1e-5
+				e.c, e.x[a] = c, x
+			}
+		}
+		if !moved {
+			break
+		}
+	}
+	return e
+}
+
+// zeroOfSlope finds the minimum between lo and hi, where slope turns from negative to positive, or the lower end; stay if there is none.
+func zeroOfSlope(slope func(float64) float64, lo, hi, stay float64) float64 {
+	fl, fh := slope(lo), slope(hi)
+	switch {
+	case fl >= 0 && fh >= 0:
+		return lo
+	case fl <= 0 && fh <= 0:
+		return hi
+	case fl > 0: // a maximum between: an end is lowest, and the node was the lowest of the three
+		return stay
+	}
+	for it := 0; it < 40 && hi-lo > 1e-7; it++ { // Illinois form of regula falsi (Dowell & Jarratt 1971, BIT 11:168-174)
+		x := lo - fl*(hi-lo)/(fh-fl)
+		if !(x > lo && x < hi) {
+			x = (lo + hi) / 2
+		}
+		f := slope(x)
+		if math.Abs(f) < 1e-9 {
+			return x
+		}
+		if f < 0 {
+			if lo = x; fl*f > 0 {
+				fh /= 2
+			}
+			fl = f
+		} else {
+			if hi = x; fh*f > 0 {
+				fl /= 2
+			}
+			fh = f
+		}
+	}
+	return (lo + hi) / 2
 }
 
 // Scan gives the first look at the history; it is made once and shared, so do not change it.
-func (h *History) Scan() *Scan { return h.scan }
+func (h *History) Scan() *Scan {
+	if h.scan == nil {
+		h.scan = h.look()
+	}
+	return h.scan
+}
+
+// stepTimes gives instants between two ends: dense after the change at from, then evenly, with the knots of the media.
+func stepTimes(from, to, settle float64, knots []float64) []float64 {
+	length := to - from
+	wide := length / 48
+	times := []float64{from}
+	for tau, d := settle/16, settle/16; tau < length; tau += d {
+		times = append(times, from+tau)
+		d = math.Min(d*1.3, wide)
+		d = math.Max(d, settle/16)
+	}
+	times = append(times, to)
+	for _, k := range knots {
+		if k > 0 && k < length {
+			times = append(times, from+k)
+		}
+	}
+	return rising(times)
+}
+
+// mostKnots is how many instants of a medium a scan takes in a step; a longer course is thinned.
+const mostKnots = 240
+
+func (h *History) look() *Scan {
+	sc := &Scan{}
+	for i := range h.Spans {
+		sp := &h.Spans[i]
+		var knots []float64
+		for _, e := range append([]FaceExposure{{Exposure: sp.Step.Exposure}}, sp.Step.Faces...) {
+			every := 1 + len(e.Medium.TimesS)/mostKnots
+			for k := 0; k < len(e.Medium.TimesS); k += every {
+				knots = append(knots, e.Medium.TimesS[k])
+			}
+		}
+		times := stepTimes(sp.StartS, sp.EndS, h.settle, knots)
+		if i > 0 {
+			times = times[1:]
+		}
+		sc.TimesS = append(sc.TimesS, times...)
+	}
+	b := h.body
+	n, m := b.nodes.count(), len(sc.TimesS)
+	all := make([]float64, n*m)
+	sc.C, sc.Spots = make([][]float64, n), make([]Spot, n)
+	for i := range sc.C {
+		sc.C[i] = all[i*m : (i+1)*m]
+		x := b.node(i)
+		sc.Spots[i] = Spot{Place: b.place(x), Surface: b.surface(x)}
+	}
+	for k, t := range sc.TimesS {
+		h.field.at(t).grid(b.buf)
+		r := h.hull[spanAt(h.Spans, t)]
+		for i, c := range b.buf {
+			sc.C[i][k] = math.Max(r[0], math.Min(r[1], c))
+		}
+	}
+	return sc
+}
 
 // Least looks in the food, from a spot of the scan on, for the place with the smallest score, staying on the surface if asked.
-// It returns the place and its score. A record returns the spot itself.
+// It returns the place and its score, and asks for few scores: a parabola along each axis, twice at most.
+// A record returns the spot itself.
 func (h *History) Least(from Spot, surfaceOnly bool, score func(Place) float64) (Place, float64) {
-	if h.body.look == nil {
-		return from.Place, score(from.Place)
+	best := score(from.Place)
+	b := h.body
+	if b == nil {
+		return from.Place, best
 	}
-	return h.body.look(h, from, surfaceOnly, score)
+	x := b.coord(from.Place)
+	fixed := -1
+	if surfaceOnly {
+		for a := range x {
+			if b.kinds[a] != lumped && math.Abs(x[a]) == 1 {
+				fixed = a
+			}
+		}
+	}
+	start := best
+	for round := 0; round < 2; round++ {
+		before := best
+		for a := range x {
+			if b.kinds[a] == lumped || a == fixed {
+				continue
+			}
+			x[a], best = b.parabola(x, a, b.spacing(a, x[a])/math.Pow(3, float64(round)), best, score)
+		}
+		if math.IsNaN(best) || before-best <= 1e-3*math.Abs(start)+1e-9 {
+			break
+		}
+	}
+	return b.place(x), best
+}
+
+// spacing is half the distance of the nodes around a coordinate.
+func (b *body) spacing(a int, x float64) float64 {
+	xs := b.nodes.x[a]
+	i := min(max(sort.SearchFloat64s(xs, x), 1), len(xs)-1)
+	return (xs[i] - xs[i-1]) / 2
+}
+
+// parabola looks along one axis, d either side, for a smaller score.
+func (b *body) parabola(x coord, a int, d, best float64, score func(Place) float64) (float64, float64) {
+	at, low := x[a], -1.0
+	if b.kinds[a] != planeFull {
+		low = 0
+	}
+	try := func(c float64) float64 {
+		c = math.Max(low, math.Min(1, c))
+		y := x
+		y[a] = c
+		s := score(b.place(y))
+		if s < best {
+			best, at = s, c
+		}
+		return s
+	}
+	here := best
+	left, right := math.NaN(), math.NaN()
+	if x[a]-d >= low {
+		left = try(x[a] - d)
+	}
+	if x[a]+d <= 1 {
+		right = try(x[a] + d)
+	}
+	if bend := left + right - 2*here; bend > 0 {
+		if step := d / 2 * (left - right) / bend; math.Abs(step) > d/20 && math.Abs(step) < 2*d {
+			try(x[a] + step)
+		}
+	}
+	return at, best
+}
+
+// Sample fills the courses of the results: every multiple of everyS and every change of step.
+func (h *History) Sample(everyS float64) Samples {
+	var times []float64
+	if end := h.EndS(); everyS > 0 {
+		for k := 0; float64(k)*everyS < end; k++ {
+			times = append(times, float64(k)*everyS)
+		}
+	}
+	if len(times) == 0 {
+		times = append(times, 0)
+	}
+	for i := range h.Spans {
+		times = append(times, h.Spans[i].EndS)
+	}
+	s := Samples{TimesS: near(rising(times))}
+	n := len(s.TimesS)
+	s.Points = make([][]float64, len(h.Points))
+	for i := range h.Points {
+		s.Points[i] = make([]float64, n)
+		h.Course(h.Points[i].Place, s.TimesS, s.Points[i])
+	}
+	if h.Recorded {
+		return s
+	}
+	s.Coldest, s.Hottest, s.Mean = make([]float64, n), make([]float64, n), make([]float64, n)
+	s.ColdestAt, s.HottestAt = make([]Place, n), make([]Place, n)
+	for i, t := range s.TimesS {
+		shot := h.field.at(t)
+		low, high := h.body.extremes(shot)
+		s.Coldest[i], s.ColdestAt[i] = h.within(t, low.c), h.body.place(low.x)
+		s.Hottest[i], s.HottestAt[i] = h.within(t, high.c), h.body.place(high.x)
+		s.Mean[i] = h.within(t, shot.mean())
+	}
+	return s
+}
+
+// near drops instants that lie within a microsecond of the one before.
+func near(t []float64) []float64 {
+	out := t[:1]
+	for _, x := range t[1:] {
+		if x-out[len(out)-1] > 1e-6 {
+			out = append(out, x)
+		}
+	}
+	return out
 }

@@ -47,8 +47,11 @@ type History struct {
 	Bound      string
 	BoundFromS float64
 
-	scan *Scan
-	body body
+	scan   *Scan
+	body   *body
+	field  field
+	hull   [][2]float64 // by span: the range of the food
+	settle float64      // s after a change from which ErrorK holds
 }
 
 // EndS is the end of the chain, in s.

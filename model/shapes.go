@@ -32,23 +32,39 @@ type Surface struct {
 	May        []string // columns that may be filled
 	NoMedium   bool     // it has no temperature
 	Published  string   // published film coefficients with their source, the low end first, in words
+	film       func(*filmCase) (w float64, source string)
 }
 
 // The surroundings.
 var (
-	Film         = &Surface{Name: "film", Needs: []string{"Film coefficient"}, May: []string{"Air speed", "Relative humidity", "Wrap resistance"}, Help: "a film coefficient typed by you: it stands for everything that happens at the surface"}
-	StillAir     = &Surface{Name: "still air", May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"}, Help: "air moved only by its own warmth"}
-	MovingAir    = &Surface{Name: "moving air", Needs: []string{"Air speed"}, May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"}, Help: "air blown over the food"}
-	WaterBath    = &Surface{Name: "water bath", May: []string{"Film coefficient", "Wrap resistance"}, Help: "water left still"}
-	StirredWater = &Surface{Name: "stirred water", May: []string{"Film coefficient", "Wrap resistance"}, Help: "water kept moving"}
-	BoilingWater = &Surface{Name: "boiling water", May: []string{"Film coefficient", "Wrap resistance"}, Help: "water at the boil"}
-	Steam        = &Surface{Name: "steam", May: []string{"Film coefficient", "Wrap resistance"}, Help: "condensing steam, air vented"}
-	ContactPlate = &Surface{Name: "contact plate", Needs: []string{"Wrap resistance"}, Help: "a plate pressed on; its contact goes into Wrap resistance"}
-	Held         = &Surface{Name: "held", Help: "the surface itself is kept at the temperature"}
-	Insulated    = &Surface{Name: "insulated", NoMedium: true, Help: "no heat passes"}
+	Film = &Surface{Name: "film", Needs: []string{"Film coefficient"}, May: []string{"Air speed", "Relative humidity", "Wrap resistance"},
+		Help: "a film coefficient typed by you: it stands for everything that happens at the surface"}
+	StillAir = &Surface{Name: "still air", May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"}, film: stillAir,
+		Help: "air moved only by its own warmth; convection only, radiation is left out"}
+	MovingAir = &Surface{Name: "moving air", Needs: []string{"Air speed"}, May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"}, film: movingAir,
+		Help: "air blown over the food; convection only, radiation is left out"}
+	WaterBath = &Surface{Name: "water bath", May: []string{"Film coefficient", "Wrap resistance"},
+		film: stated(waterBathW, "stated low: bagged and rolled joints in water were measured at a few tens of W/m²K (fitted to James & James 2002, Meat Refrigeration, table 16.7), textbooks give 50 to 100 for liquids left still"),
+		Help: "water left still; a low film is taken unless you type one"}
+	StirredWater = &Surface{Name: "stirred water", May: []string{"Film coefficient", "Wrap resistance"},
+		film: stated(95, "low end of 95 to 155 W/m²K for a pouch in stirred water (Baldwin 2012, Int. J. Gastronomy and Food Science 1:15-30; from memory)"),
+		Help: "water kept moving; a low film is taken unless you type one"}
+	BoilingWater = &Surface{Name: "boiling water", May: []string{"Film coefficient", "Wrap resistance"},
+		film: stated(1000, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 (Çengel, Heat Transfer, typical values): food conducts so badly that more makes no difference"),
+		Help: "water at the boil"}
+	Steam = &Surface{Name: "steam", May: []string{"Film coefficient", "Wrap resistance"},
+		film: stated(1000, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 for pure condensing steam (Çengel, Heat Transfer, typical values); air in the steam lowers it strongly"),
+		Help: "condensing steam, air vented: the temperature is that of the steam's own pressure"}
+	ContactPlate = &Surface{Name: "contact plate", Needs: []string{"Wrap resistance"},
+		Help: "a plate pressed on; its contact goes into Wrap resistance"}
+	Held      = &Surface{Name: "held", Help: "the surface itself is kept at the temperature"}
+	Insulated = &Surface{Name: "insulated", NoMedium: true, Help: "no heat passes"}
 
 	Surfaces = []*Surface{Film, StillAir, MovingAir, WaterBath, StirredWater, BoilingWater, Steam, ContactPlate, Held, Insulated}
 )
+
+// waterBathW is the film taken in water left still, W/(m²·K).
+const waterBathW = 30
 
 // Refusal is a process or food that conduction does not describe: what a person may type, why it is refused, what to do instead.
 type Refusal struct{ Words, Why, Instead string }

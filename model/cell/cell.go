@@ -123,3 +123,15 @@ type Reading struct {
 	Used   string // what the program computes with, in SI or °C
 	Why    string // for a default: why this value stands in; "" otherwise
 }
+
+// Error makes Errors an error: one line a problem.
+func (es Errors) Error() string {
+	s := ""
+	for i, e := range es {
+		if i > 0 {
+			s += "\n"
+		}
+		s += e.Error()
+	}
+	return s
+}

@@ -1,0 +1,265 @@
+package model
+
+import (
+	"fmt"
+	"math"
+
+	"slowpoint/model/cell"
+)
+
+// unfrozenC is how cold a food without a known freezing point may be predicted, °C.
+const unfrozenC = -0.5
+
+// warmerK is how much warmer than the medium before it air must be to count as heating, K.
+const warmerK = 5
+
+// Check tells everything that keeps a product from being calculated by the method at hand: rows in At, column headings in Field.
+// Nothing is calculated.
+func Check(p Product, steps []Step) cell.Errors {
+	c := checker{product: &p}
+	c.shape()
+	c.food()
+	c.points()
+	if len(steps) == 0 {
+		c.add(p.At, "Process", "", "has no steps", "add its steps to the sheet Steps")
+	}
+	before := p.StartC
+	for i := range steps {
+		st := &steps[i]
+		c.step(st)
+		low, high := math.Inf(1), math.Inf(-1)
+		for _, e := range exposures(p.Shape, st) {
+			c.exposure(st, e, before)
+			for _, m := range e.Medium.C {
+				low, high = math.Min(low, m), math.Max(high, m)
+			}
+		}
+		if !math.IsInf(high, 0) {
+			before = high
+		}
+	}
+	return c.found
+}
+
+// exposures gives the different surroundings of a step that the shape has a face for.
+func exposures(s *Shape, st *Step) []*Exposure {
+	left := false // a face that keeps the step's own surroundings
+	var out []*Exposure
+	for _, f := range s.Faces {
+		if e := st.on(f); e == &st.Exposure {
+			left = true
+		} else {
+			out = append(out, e)
+		}
+	}
+	if left || len(s.Faces) == 0 {
+		out = append([]*Exposure{&st.Exposure}, out...)
+	}
+	return out
+}
+
+// on gives the surroundings of a face.
+func (st *Step) on(f *Face) *Exposure {
+	for i := range st.Faces {
+		if st.Faces[i].Face == f {
+			return &st.Faces[i].Exposure
+		}
+	}
+	return &st.Exposure
+}
+
+type checker struct {
+	product *Product
+	found   cell.Errors
+}
+
+func (c *checker) add(at cell.Ref, field, typed, msg, hint string) {
+	c.found.Add(cell.Error{At: at, Field: field, Typed: typed, Msg: msg, Hint: hint})
+}
+
+func (c *checker) shape() {
+	p := c.product
+	if p.Shape.Refused != "" {
+		c.add(p.At, "Shape", p.Shape.Name, p.Shape.Refused+", so this product is not calculated",
+			"use the nearest shape on the slow side: the thickest part as a slab or cylinder, with the fewest cooled faces")
+	}
+	size := map[string]float64{"Thickness": p.Size.ThicknessM, "Width": p.Size.WidthM, "Length": p.Size.LengthM,
+		"Diameter": p.Size.DiameterM, "Volume": p.Size.VolumeM3, "Surface area": p.Size.AreaM2}
+	for _, need := range p.Shape.Needs {
+		if v := size[need]; !(v > 0) || math.IsInf(v, 0) {
+			c.add(p.At, need, "", fmt.Sprintf("a %s needs %s, a number above 0", p.Shape.Name, need), "")
+		}
+	}
+}
+
+func (c *checker) food() {
+	p := c.product
+	f := p.Food
+	if f == nil {
+		if p.Shape.Refused == "" {
+			c.add(p.At, "Food", "", "no food is given", "type the name of a built-in food or of a row of Foods")
+		}
+		return
+	}
+	if f.Table {
+		c.add(f.At, "At temperature", "", fmt.Sprintf("%s has properties at several temperatures, which cannot be calculated yet", f.Name),
+			"keep one row, at the middle of the temperatures that matter, on the slow side")
+	}
+	if p.Shape == Stirred {
+		return
+	}
+	switch f.Flow {
+	case FlowsYes:
+		c.add(f.At, "Flows", f.Flow.Name, fmt.Sprintf("%s mixes by itself when left still; conduction does not describe that", f.Name),
+			"use the shape stirred if it is stirred all the time, or judge a probe record")
+	case FlowsThick:
+		c.add(f.At, "Flows", f.Flow.Name, fmt.Sprintf("%s may mix by itself while it is hot; conduction alone does not describe that", f.Name),
+			"use the shape stirred if it is stirred all the time, or judge a probe record")
+	}
+	if f.FreezingC != nil && p.StartC < *f.FreezingC || f.FreezingC == nil && p.StartC < unfrozenC {
+		c.add(p.At, "Start temperature", fmt.Sprintf("%g °C", p.StartC), "the food starts frozen, and melting cannot be calculated yet",
+			"judge a probe record, or start from the thawed food")
+	}
+}
+
+func (c *checker) points() {
+	p := c.product
+	if p.Shape.Refused != "" {
+		return
+	}
+	half := reach(p)
+	for _, pt := range p.Points {
+		got := [3]float64{math.Abs(pt.UpM), math.Abs(pt.AcrossM), math.Abs(pt.AlongM)}
+		for i, name := range []string{"Up", "Across", "Along"} {
+			if got[i] > half[i]*(1+1e-9)+1e-12 {
+				c.add(pt.At, name, fmt.Sprintf("%g mm", 1000*got[i]), fmt.Sprintf("the point %s lies outside the food, which reaches %g mm from its centre in this direction", pt.Name, 1000*half[i]), "measure from the geometric centre")
+			}
+		}
+	}
+}
+
+// reach is how far the food extends from its centre up, across and along, m. A slab has no end across and along.
+func reach(p *Product) [3]float64 {
+	z := &p.Size
+	switch p.Shape {
+	case Slab:
+		return [3]float64{z.ThicknessM / 2, math.Inf(1), math.Inf(1)}
+	case Cylinder:
+		return [3]float64{z.DiameterM / 2, 0, math.Inf(1)}
+	case Sphere:
+		return [3]float64{z.DiameterM / 2, 0, 0}
+	case ShortCylinder:
+		return [3]float64{z.LengthM / 2, z.DiameterM / 2, 0}
+	case Bar:
+		return [3]float64{z.ThicknessM / 2, z.WidthM / 2, math.Inf(1)}
+	case Brick:
+		return [3]float64{z.ThicknessM / 2, z.WidthM / 2, z.LengthM / 2}
+	}
+	return [3]float64{math.Inf(1), math.Inf(1), math.Inf(1)}
+}
+
+func (c *checker) step(st *Step) {
+	switch st.Stage {
+	case Freeze, Thaw:
+		c.add(st.At, "Stage", st.Stage.Name, "freezing and thawing cannot be calculated yet", "judge a probe record of this step")
+	}
+	if !(st.DurationS > 0) || math.IsInf(st.DurationS, 0) {
+		c.add(st.At, "Duration", "", "the step needs a duration above 0", "")
+	}
+	for _, f := range st.Faces {
+		known := false
+		for _, g := range c.product.Shape.Faces {
+			known = known || g == f.Face
+		}
+		if !known {
+			c.add(f.At, "Face", f.Face.Name, fmt.Sprintf("a %s has no face of that name", c.product.Shape.Name), "")
+		}
+	}
+}
+
+func (c *checker) exposure(st *Step, e *Exposure, before float64) {
+	if e.RadiatingC != nil || e.Emissivity != nil {
+		field := "Radiating temperature"
+		if e.RadiatingC == nil {
+			field = "Emissivity"
+		}
+		c.add(e.At, field, "", "radiation cannot be calculated yet", "leave it out, which heats and chills more slowly, or use film with a coefficient that includes it")
+	}
+	if e.Cover == LooseLid && e.WrapM2KW == nil {
+		c.add(e.At, "Wrap resistance", "", "a loose lid needs the resistance of its air gap", "about 0.04 m²K/W a millimetre of air")
+	}
+	for _, need := range e.Surface.Needs {
+		if need == "Film coefficient" && e.FilmW == nil || need == "Air speed" && e.AirMS == nil && e.FilmW == nil || need == "Wrap resistance" && e.WrapM2KW == nil {
+			c.add(e.At, need, "", fmt.Sprintf("%s needs it", e.Surface.Name), e.Surface.Published)
+		}
+	}
+	m := &e.Medium
+	if e.Surface.NoMedium {
+		return
+	}
+	if len(m.C) == 0 {
+		c.add(e.At, "Temperature", "", fmt.Sprintf("%s needs a temperature or a course", e.Surface.Name), "")
+		return
+	}
+	if n := len(m.TimesS); n > 1 && m.TimesS[n-1] < st.DurationS*(1-1e-12) {
+		c.add(e.At, "Course", m.Name, fmt.Sprintf("the course ends after %g min, before its step (%g min) does", m.TimesS[n-1]/60, st.DurationS/60), "add rows to the course or shorten the step")
+	}
+	low, high := m.C[0], m.C[0]
+	for _, x := range m.C {
+		low, high = math.Min(low, x), math.Max(high, x)
+	}
+	field := "Temperature"
+	if m.Name != "" {
+		field = "Course"
+	}
+	c.air(st, e, high, before)
+	if e.Surface == BoilingWater {
+		if b := boilingC(st.AltitudeM); high > b+0.5 {
+			c.add(e.At, field, fmt.Sprintf("%g °C", high), fmt.Sprintf("water boils at %.1f °C at %g m above the sea", b, st.AltitudeM), "type the temperature of the water at your altitude (Plan item Altitude)")
+		}
+	}
+	c.cold(st, e, field, low)
+}
+
+// air asks for dry or wet where air heats the food.
+func (c *checker) air(st *Step, e *Exposure, high, before float64) {
+	if e.Surface != StillAir && e.Surface != MovingAir {
+		return
+	}
+	heats := st.Stage.Heats && high > c.product.StartC || high > before+warmerK
+	if !heats {
+		return
+	}
+	switch {
+	case e.Wet == nil:
+		c.add(e.At, "Surface", "", "air that is warmer than the food needs dry or wet here: a wet surface heats much more slowly",
+			"type dry only for food that is wrapped, lidded or truly dry")
+	case *e.Wet:
+		c.add(e.At, "Surface", "wet", "heating a wet surface in air cannot be calculated yet, and as a dry one it would come out far too fast",
+			"use film with a coefficient and temperature from your own measurements, or judge a probe record")
+	}
+}
+
+// cold looks for media below the freezing point.
+func (c *checker) cold(st *Step, e *Exposure, field string, low float64) {
+	f := c.product.Food
+	if f == nil {
+		return
+	}
+	typed := fmt.Sprintf("%g °C", low)
+	if f.FreezingC == nil {
+		if low < unfrozenC {
+			c.add(e.At, field, typed, fmt.Sprintf("the food could freeze here, and its freezing point is not known, so nothing below %g °C is calculated", unfrozenC),
+				"give the food's freezing point in Foods; a chill medium below it is then raised to it, which is a bound on the safe side")
+		}
+		return
+	}
+	if low >= *f.FreezingC || raises(st.Stage) {
+		return
+	}
+	c.add(e.At, field, typed, fmt.Sprintf("the food could freeze here (its freezing point is %g °C), which cannot be calculated yet", *f.FreezingC), "judge a probe record of this step")
+}
+
+// raises tells whether a medium below the freezing point may be raised to it: only where the food is to get colder,
+// so that every temperature is then at or above the true one until the place itself freezes (comparison principle).
+func raises(s *Stage) bool { return s == Cool || s == Rest || s == HoldCold || s == Store }

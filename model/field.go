@@ -1,0 +1,636 @@
+package model
+
+import "math"
+
+// A field is the temperature of every place in the food over the whole chain, in one of two forms: tensor, or product of axes.
+// Places are given in the body's own coordinates, one an axis: 0…1 from the centre to the face, or -1…1 between two faces.
+type field interface {
+	// course fills out with the temperatures of a place at rising times.
+	course(x coord, times, out []float64)
+	// at makes the snapshot of one instant; it is valid until the next call.
+	at(t float64) snapshot
+}
+
+// snapshot is a field at one instant.
+type snapshot interface {
+	// grid fills out with the temperatures at all nodes, the last axis fastest.
+	grid(out []float64)
+	// slice gives the coefficients of the polynomials along one axis through a place.
+	slice(axis int, x coord, out []float64)
+	mean() float64
+}
+
+// coord is a place in the body's own coordinates.
+type coord [3]float64
+
+// chainStep is one step ready to be solved: what no longer depends on the resolution.
+type chainStep struct {
+	durS   float64 // as it runs
+	props  Properties
+	lo, up [3]film   // by axis
+	media  []Course  // by group, each with a point at 0
+	knots  []float64 // instants within the step at which the slope of a medium changes, from 0, the first is 0
+	lumpW  float64   // stirred: Σ U·A/(ρcV), 1/s
+	lumpG  []float64 // stirred: by group, 1/s
+}
+
+// nodes are the places at which snapshots are looked at, by axis.
+type nodes struct {
+	x   [3][]float64
+	phi [3][]float64 // phi[a][g*n+m]: polynomial m at node g
+}
+
+// tensor is a field as sums over the modes of three axes; unused axes have one mode. It takes any media on any faces.
+type tensor struct {
+	axes  [3]*axis
+	nodes *nodes
+	start float64
+	steps []*tensorStep
+	segs  []tensorSeg
+	now   tensorShot
+}
+
+type tensorStep struct {
+	ax     [3]*axisStep
+	extra  float64      // rate of a stirred food
+	groups []response   // by medium
+	e0     [3][]float64 // the constant 1 in modes, by axis
+	meanS  []float64    // by medium: mean of response s
+	meanW  []float64    // by medium: mean of response w
+	gridB  [3][]float64 // gridB[a][g*n+i]: mode i at node g
+	steady [][]float64  // by medium: response s at all nodes; made when first needed
+	creep  [][]float64  // by medium: response w at all nodes
+}
+
+// response is what a medium of 1 K does in the long run: the field s, and the field w by which s lags behind a slope of 1 K/s.
+type response struct{ s, w []float64 }
+
+type tensorSeg struct {
+	t0, t1 float64
+	step   *tensorStep
+	level  []float64 // by medium, at t0, K relative to 0 °C
+	slope  []float64 // by medium, K/s
+	c      []float64 // what decays, by mode, at t0
+}
+
+func (f *tensor) size() int { return f.axes[0].n * f.axes[1].n * f.axes[2].n }
+
+// newTensor starts a field at one temperature.
+func newTensor(axes [3]*axis, nd *nodes, startC float64) *tensor {
+	f := &tensor{axes: axes, nodes: nd, start: startC}
+	f.now.f = f
+	return f
+}
+
+// run appends one step to the field.
+func (f *tensor) run(cs *chainStep) {
+	st := &tensorStep{extra: cs.lumpW}
+	ax := f.axes
+	for a := range ax {
+		st.ax[a] = ax[a].step(cs.props, cs.lo[a], cs.up[a])
+		st.e0[a] = st.ax[a].b[:ax[a].n]
+	}
+	n := f.size()
+	for g := range cs.media {
+		r := response{make([]float64, n), make([]float64, n)}
+		for a := range ax {
+			if cs.lo[a].group == g {
+				addOuter(r.s, st, a, st.ax[a].gLo)
+			}
+			if cs.up[a].group == g {
+				addOuter(r.s, st, a, st.ax[a].gUp)
+			}
+		}
+		if cs.lumpG != nil {
+			r.s[0] += cs.lumpG[g]
+		}
+		st.eachRate(func(i int, rate float64) {
+			if rate > 0 {
+				r.s[i] /= rate
+				r.w[i] = r.s[i] / rate
+			} else {
+				r.s[i] = 0
+			}
+		})
+		st.groups = append(st.groups, r)
+		st.meanS, st.meanW = append(st.meanS, st.average(r.s)), append(st.meanW, st.average(r.w))
+	}
+	now := f.carry(st) // modes of this step
+	t0 := f.end()
+	for k, from := range cs.knots {
+		to := cs.durS
+		if k+1 < len(cs.knots) {
+			to = math.Min(to, cs.knots[k+1])
+		}
+		if to <= from && k > 0 {
+			break
+		}
+		sg := tensorSeg{t0: t0 + from, t1: t0 + to, step: st}
+		for g := range cs.media {
+			m := &cs.media[g]
+			a, b := lineAt(m.TimesS, m.C, from), lineAt(m.TimesS, m.C, to)
+			slope := 0.0
+			if to > from {
+				slope = (b - a) / (to - from)
+			}
+			sg.level, sg.slope = append(sg.level, a), append(sg.slope, slope)
+		}
+		c := now
+		for g, r := range st.groups {
+			for i := range c {
+				c[i] -= r.s[i]*sg.level[g] - r.w[i]*sg.slope[g]
+			}
+		}
+		sg.c = c
+		f.segs = append(f.segs, sg)
+		if to < cs.durS {
+			now = make([]float64, n)
+			f.modes(&f.segs[len(f.segs)-1], to-from, now)
+		}
+	}
+	f.steps = append(f.steps, st)
+}
+
+// end is the end of the last segment.
+func (f *tensor) end() float64 {
+	if len(f.segs) == 0 {
+		return 0
+	}
+	return f.segs[len(f.segs)-1].t1
+}
+
+// addOuter adds v on axis a times the constant on the others.
+func addOuter(out []float64, st *tensorStep, a int, v []float64) {
+	e := st.e0
+	e[a] = v
+	i := 0
+	for _, x := range e[0] {
+		for _, y := range e[1] {
+			xy := x * y
+			for _, z := range e[2] {
+				out[i] += xy * z
+				i++
+			}
+		}
+	}
+}
+
+// average gives the volume mean of a field in modes.
+func (st *tensorStep) average(modes []float64) float64 {
+	sum, i := 0.0, 0
+	for _, x := range st.e0[0] {
+		for _, y := range st.e0[1] {
+			for _, z := range st.e0[2] {
+				sum += modes[i] * x * y * z
+				i++
+			}
+		}
+	}
+	return sum
+}
+
+// eachRate calls do for every mode with its rate.
+func (st *tensorStep) eachRate(do func(i int, rate float64)) {
+	i := 0
+	for _, x := range st.ax[0].rate {
+		for _, y := range st.ax[1].rate {
+			for _, z := range st.ax[2].rate {
+				do(i, x+y+z+st.extra)
+				i++
+			}
+		}
+	}
+}
+
+// carry turns the field at the end of the last segment into modes of the next step.
+func (f *tensor) carry(st *tensorStep) []float64 {
+	n := f.size()
+	now := make([]float64, n)
+	if len(f.segs) == 0 {
+		addOuter(now, st, 0, st.e0[0])
+		for i := range now {
+			now[i] *= f.start
+		}
+		return now
+	}
+	sg := &f.segs[len(f.segs)-1]
+	f.modes(sg, sg.t1-sg.t0, now)
+	tmp := make([]float64, n)
+	var p [3][]float64
+	for a := range f.axes { // from modes of the old step to modes of the new one
+		p[a] = project(f.axes[a].n, sg.step.ax[a].b, st.ax[a].b)
+	}
+	n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
+	along(now, tmp, p[0], 1, n0, n1*n2)
+	along(tmp, now, p[1], n0, n1, n2)
+	along(now, tmp, p[2], n0*n1, n2, 1)
+	return tmp
+}
+
+// project gives newᵀ·old: n×n, row = new mode.
+func project(n int, old, new []float64) []float64 {
+	p := make([]float64, n*n)
+	for m := 0; m < n; m++ {
+		for i := 0; i < n; i++ {
+			if f := new[m*n+i]; f != 0 {
+				for j, x := range old[m*n : m*n+n] {
+					p[i*n+j] += f * x
+				}
+			}
+		}
+	}
+	return p
+}
+
+// along applies the n×n matrix p to the middle index of in (outer × n × inner).
+func along(in, out, p []float64, outer, n, inner int) {
+	for o := 0; o < outer; o++ {
+		block, res := in[o*n*inner:(o+1)*n*inner], out[o*n*inner:(o+1)*n*inner]
+		for i := 0; i < n; i++ {
+			r := res[i*inner : (i+1)*inner]
+			for k := range r {
+				r[k] = 0
+			}
+			for j := 0; j < n; j++ {
+				f := p[i*n+j]
+				if f == 0 {
+					continue
+				}
+				for k, x := range block[j*inner : (j+1)*inner] {
+					r[k] += f * x
+				}
+			}
+		}
+	}
+}
+
+// decays fills e with exp(-rate·tau) and tells how many are worth keeping.
+func decays(rate []float64, tau float64, e []float64) int {
+	for i, r := range rate {
+		x := r * tau
+		if x > 45 { // below 3e-20
+			if i > 0 {
+				return i
+			}
+			e[0] = 0
+			return 1
+		}
+		e[i] = math.Exp(-x)
+	}
+	return len(rate)
+}
+
+// modes fills out with all modes of a segment, tau after its start.
+func (f *tensor) modes(sg *tensorSeg, tau float64, out []float64) {
+	for i := range out {
+		out[i] = 0
+	}
+	f.decaying(sg, tau, out)
+	for g, r := range sg.step.groups {
+		level := sg.level[g] + sg.slope[g]*tau
+		for i := range out {
+			out[i] += r.s[i]*level - r.w[i]*sg.slope[g]
+		}
+	}
+}
+
+// decaying fills out with what still decays and tells the number of modes by axis that are worth looking at; the others are not touched.
+func (f *tensor) decaying(sg *tensorSeg, tau float64, out []float64) (keep [3]int) {
+	var e [3][maxDegrees]float64
+	for a := range keep {
+		keep[a] = decays(sg.step.ax[a].rate, tau, e[a][:f.axes[a].n])
+	}
+	if sg.step.extra > 0 {
+		e[0][0] *= math.Exp(-sg.step.extra * tau)
+	}
+	n1, n2 := f.axes[1].n, f.axes[2].n
+	for i := 0; i < keep[0]; i++ {
+		for j := 0; j < keep[1]; j++ {
+			xy := e[0][i] * e[1][j]
+			at := (i*n1 + j) * n2
+			c, o := sg.c[at:at+keep[2]], out[at:at+keep[2]]
+			for k, z := range e[2][:keep[2]] {
+				o[k] = c[k] * xy * z
+			}
+		}
+	}
+	return keep
+}
+
+// segAt finds the segment that holds t; at a change the one before it.
+func (f *tensor) segAt(t float64) int {
+	lo, hi := 0, len(f.segs)-1
+	for lo < hi {
+		mid := (lo + hi) / 2
+		if t <= f.segs[mid].t1 {
+			hi = mid
+		} else {
+			lo = mid + 1
+		}
+	}
+	return lo
+}
+
+// modeValues fills out with the modes of one axis of a step at x.
+func modeValues(a *axis, b []float64, x float64, out []float64) {
+	n := a.n
+	var phi [maxDegrees]float64
+	a.values(x, phi[:n], nil)
+	for i := range out[:n] {
+		out[i] = 0
+	}
+	for m := 0; m < n; m++ {
+		f := phi[m]
+		for i, v := range b[m*n : m*n+n] {
+			out[i] += f * v
+		}
+	}
+}
+
+func (f *tensor) course(x coord, times, out []float64) {
+	var v, e [3][maxDegrees]float64
+	var lin [2][]float64 // by medium: s and w at the place
+	var in *tensorStep
+	n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
+	var buf [2 * 8]float64
+	for ti, t := range times {
+		sg := &f.segs[f.segAt(t)]
+		st := sg.step
+		if st != in {
+			in = st
+			for a := range f.axes {
+				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
+			}
+			lin[0], lin[1] = buf[:0:8], buf[8:8:16]
+			for _, r := range st.groups {
+				s, w := 0.0, 0.0
+				i := 0
+				for a := 0; a < n0; a++ {
+					for b := 0; b < n1; b++ {
+						ss, ww := 0.0, 0.0
+						rs, rw := r.s[i:i+n2], r.w[i:i+n2]
+						for k, z := range v[2][:n2] {
+							ss += rs[k] * z
+							ww += rw[k] * z
+						}
+						xy := v[0][a] * v[1][b]
+						s += ss * xy
+						w += ww * xy
+						i += n2
+					}
+				}
+				lin[0], lin[1] = append(lin[0], s), append(lin[1], w)
+			}
+		}
+		tau := math.Min(math.Max(t-sg.t0, 0), sg.t1-sg.t0)
+		sum := 0.0
+		for g := range st.groups {
+			sum += lin[0][g]*(sg.level[g]+sg.slope[g]*tau) - lin[1][g]*sg.slope[g]
+		}
+		var keep [3]int
+		for a := range keep {
+			keep[a] = decays(st.ax[a].rate, tau, e[a][:f.axes[a].n])
+			for i := 0; i < keep[a]; i++ {
+				e[a][i] *= v[a][i]
+			}
+		}
+		extra := 1.0
+		if st.extra > 0 {
+			extra = math.Exp(-st.extra * tau)
+		}
+		for i := 0; i < keep[0]; i++ {
+			row := 0.0
+			for j := 0; j < keep[1]; j++ {
+				at := (i*n1 + j) * n2
+				c := sg.c[at : at+keep[2]]
+				dot := 0.0
+				for k, z := range e[2][:keep[2]] {
+					dot += c[k] * z
+				}
+				row += dot * e[1][j]
+			}
+			sum += row * e[0][i] * extra
+		}
+		out[ti] = sum
+	}
+}
+
+// tensorShot is a tensor at one instant.
+type tensorShot struct {
+	f      *tensor
+	sg     *tensorSeg
+	tau    float64
+	keep   [3]int
+	amp    []float64 // what decays
+	all    []float64 // everything, made when asked for
+	full   bool
+	b1, b2 []float64
+}
+
+func (f *tensor) at(t float64) snapshot {
+	s := &f.now
+	if s.amp == nil {
+		s.amp, s.all = make([]float64, f.size()), make([]float64, f.size())
+	}
+	s.sg = &f.segs[f.segAt(t)]
+	s.tau = math.Min(math.Max(t-s.sg.t0, 0), s.sg.t1-s.sg.t0)
+	s.keep = f.decaying(s.sg, s.tau, s.amp)
+	s.full = false
+	return s
+}
+
+// gridValues gives mode i at node g for each axis.
+func (f *tensor) gridValues(st *tensorStep) {
+	if st.gridB[0] != nil {
+		return
+	}
+	for a := range f.axes {
+		st.gridB[a] = nodeModes(f.axes[a], f.nodes, a, st.ax[a].b)
+	}
+	var whole [3]int
+	for a := range whole {
+		whole[a] = f.axes[a].n
+	}
+	m := f.nodes.count()
+	for _, r := range st.groups {
+		s, w := make([]float64, m), make([]float64, m)
+		f.now.contract(r.s, whole, st, s)
+		f.now.contract(r.w, whole, st, w)
+		st.steady, st.creep = append(st.steady, s), append(st.creep, w)
+	}
+}
+
+// nodeModes gives the modes of one axis of a step at its nodes.
+func nodeModes(ax *axis, nd *nodes, a int, b []float64) []float64 {
+	n := ax.n
+	out := make([]float64, len(nd.x[a])*n)
+	for g := range nd.x[a] {
+		o := out[g*n : g*n+n]
+		for m, f := range nd.phi[a][g*n : g*n+n] {
+			for i, v := range b[m*n : m*n+n] {
+				o[i] += f * v
+			}
+		}
+	}
+	return out
+}
+
+func (nd *nodes) count() int { return len(nd.x[0]) * len(nd.x[1]) * len(nd.x[2]) }
+
+// contract adds up modes to temperatures at all nodes, the first keep modes of each axis only.
+func (s *tensorShot) contract(amp []float64, keep [3]int, st *tensorStep, out []float64) {
+	f := s.f
+	n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
+	g0, g1, g2 := len(f.nodes.x[0]), len(f.nodes.x[1]), len(f.nodes.x[2])
+	if n0 == 1 && n1 == 1 && n2 == 1 {
+		out[0] = amp[0] * st.gridB[0][0] * st.gridB[1][0] * st.gridB[2][0]
+		return
+	}
+	if g1 == 1 && g2 == 1 { // one axis
+		for g := 0; g < g0; g++ {
+			sum := 0.0
+			for i, v := range st.gridB[0][g*n0 : g*n0+keep[0]] {
+				sum += amp[i] * v
+			}
+			out[g] = sum
+		}
+		return
+	}
+	// last axis first: nodes of axis 2, then 1, then 0
+	need1, need2 := n0*n1*g2, n0*g1*g2
+	if cap(s.b1) < need1 {
+		s.b1 = make([]float64, need1)
+	}
+	if cap(s.b2) < need2 {
+		s.b2 = make([]float64, need2)
+	}
+	b1, b2 := s.b1[:need1], s.b2[:need2]
+	for i := 0; i < keep[0]; i++ {
+		for j := 0; j < keep[1]; j++ {
+			a := amp[(i*n1+j)*n2 : (i*n1+j)*n2+keep[2]]
+			o := b1[(i*n1+j)*g2 : (i*n1+j+1)*g2]
+			for g := range o {
+				sum := 0.0
+				for k, v := range st.gridB[2][g*n2 : g*n2+keep[2]] {
+					sum += a[k] * v
+				}
+				o[g] = sum
+			}
+		}
+	}
+	for i := 0; i < keep[0]; i++ {
+		for g := 0; g < g1; g++ {
+			o := b2[(i*g1+g)*g2 : (i*g1+g+1)*g2]
+			for k := range o {
+				o[k] = 0
+			}
+			for j, v := range st.gridB[1][g*n1 : g*n1+keep[1]] {
+				for k, x := range b1[(i*n1+j)*g2 : (i*n1+j+1)*g2] {
+					o[k] += v * x
+				}
+			}
+		}
+	}
+	plane := g1 * g2
+	for g := 0; g < g0; g++ {
+		o := out[g*plane : (g+1)*plane]
+		for k := range o {
+			o[k] = 0
+		}
+		for i, v := range st.gridB[0][g*n0 : g*n0+keep[0]] {
+			for k, x := range b2[i*plane : (i+1)*plane] {
+				o[k] += v * x
+			}
+		}
+	}
+}
+
+func (s *tensorShot) grid(out []float64) {
+	st := s.sg.step
+	s.f.gridValues(st)
+	s.contract(s.amp, s.keep, st, out)
+	for g := range st.groups {
+		level, slope := s.sg.level[g]+s.sg.slope[g]*s.tau, s.sg.slope[g]
+		for i, v := range st.steady[g] {
+			out[i] += v*level - st.creep[g][i]*slope
+		}
+	}
+}
+
+// whole makes all modes at the instant.
+func (s *tensorShot) whole() []float64 {
+	if !s.full {
+		s.f.modes(s.sg, s.tau, s.all)
+		s.full = true
+	}
+	return s.all
+}
+
+func (s *tensorShot) slice(axis int, x coord, out []float64) {
+	f := s.f
+	st := s.sg.step
+	n := [3]int{f.axes[0].n, f.axes[1].n, f.axes[2].n}
+	var v [3][maxDegrees]float64
+	for a := range f.axes {
+		if a != axis {
+			modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
+		}
+	}
+	var q [maxDegrees]float64
+	all := s.whole()
+	i := 0
+	for a := 0; a < n[0]; a++ {
+		for b := 0; b < n[1]; b++ {
+			row := all[i : i+n[2]]
+			i += n[2]
+			if axis == 2 {
+				xy := v[0][a] * v[1][b]
+				for k, c := range row {
+					q[k] += xy * c
+				}
+				continue
+			}
+			dot := 0.0
+			for k, z := range v[2][:n[2]] {
+				dot += row[k] * z
+			}
+			if axis == 0 {
+				q[a] += dot * v[1][b]
+			} else {
+				q[b] += dot * v[0][a]
+			}
+		}
+	}
+	toPolynomials(n[axis], st.ax[axis].b, q[:], out)
+}
+
+// toPolynomials turns modes into polynomials: out = b·q.
+func toPolynomials(n int, b, q, out []float64) {
+	for m := 0; m < n; m++ {
+		sum := 0.0
+		for i, v := range b[m*n : m*n+n] {
+			sum += v * q[i]
+		}
+		out[m] = sum
+	}
+}
+
+func (s *tensorShot) mean() float64 {
+	f, st := s.f, s.sg.step
+	n1, n2 := f.axes[1].n, f.axes[2].n
+	sum := 0.0
+	for i := 0; i < s.keep[0]; i++ {
+		for j := 0; j < s.keep[1]; j++ {
+			xy := st.e0[0][i] * st.e0[1][j]
+			at := (i*n1 + j) * n2
+			for k, z := range st.e0[2][:s.keep[2]] {
+				sum += s.amp[at+k] * xy * z
+			}
+		}
+	}
+	for g := range st.groups {
+		level, slope := s.sg.level[g]+s.sg.slope[g]*s.tau, s.sg.slope[g]
+		sum += st.meanS[g]*level - st.meanW[g]*slope
+	}
+	return sum
+}

@@ -1,0 +1,250 @@
+package model
+
+import "math"
+
+// product is a field as a sum of products of one-axis fields. With one constant medium on all faces the field of the first step is
+// Tm + (T0-Tm)·X·Y·Z, and each later step adds one product: a standard superposition (Carslaw & Jaeger 1959, section 1.15).
+// A place then costs a few numbers an axis instead of all modes.
+type product struct {
+	axes  [3]*axis
+	nodes *nodes
+	start float64
+	steps []*productStep
+	now   productShot
+}
+
+type productStep struct {
+	t0, t1  float64
+	ax      [3]*axisStep
+	e0      [3][]float64
+	mediumC float64
+	terms   []productTerm
+	gridB   [3][]float64
+}
+
+// productTerm is weight times a one-axis field in modes for each axis, at t0.
+type productTerm struct {
+	weight float64
+	x      [3][]float64
+}
+
+// separates tells whether the chain keeps products of axes: one constant medium in every step, more than one axis.
+func separates(axes [3]*axis, chain []*chainStep) bool {
+	if axes[1].kind == lumped {
+		return false
+	}
+	for _, cs := range chain {
+		if len(cs.media) != 1 || len(cs.media[0].C) != 1 {
+			return false
+		}
+	}
+	return true
+}
+
+func newProduct(axes [3]*axis, nd *nodes, startC float64) *product {
+	f := &product{axes: axes, nodes: nd, start: startC}
+	f.now.f = f
+	return f
+}
+
+// run appends one step.
+func (f *product) run(cs *chainStep) {
+	st := &productStep{mediumC: cs.media[0].C[0]}
+	before := f.start
+	var last *productStep
+	if len(f.steps) > 0 {
+		last = f.steps[len(f.steps)-1]
+		st.t0, before = last.t1, last.mediumC
+	}
+	st.t1 = st.t0 + cs.durS
+	for a := range f.axes {
+		st.ax[a] = f.axes[a].step(cs.props, cs.lo[a], cs.up[a])
+		st.e0[a] = st.ax[a].b[:f.axes[a].n]
+	}
+	if last != nil {
+		var p [3][]float64
+		for a := range f.axes {
+			p[a] = project(f.axes[a].n, last.ax[a].b, st.ax[a].b)
+		}
+		for _, old := range last.terms {
+			t := productTerm{weight: old.weight}
+			for a := range f.axes {
+				n := f.axes[a].n
+				var e [maxDegrees]float64
+				keep := decays(last.ax[a].rate, last.t1-last.t0, e[:n])
+				t.x[a] = make([]float64, n)
+				for i := range t.x[a] {
+					for j := 0; j < keep; j++ {
+						t.x[a][i] += p[a][i*n+j] * old.x[a][j] * e[j]
+					}
+				}
+			}
+			st.terms = append(st.terms, t)
+		}
+	}
+	st.terms = append(st.terms, productTerm{weight: before - st.mediumC, x: st.e0})
+	f.steps = append(f.steps, st)
+}
+
+func (f *product) stepAt(t float64) *productStep {
+	for _, st := range f.steps {
+		if t <= st.t1 {
+			return st
+		}
+	}
+	return f.steps[len(f.steps)-1]
+}
+
+func (f *product) course(x coord, times, out []float64) {
+	var e, v [3][maxDegrees]float64
+	var in *productStep
+	for ti, t := range times {
+		st := f.stepAt(t)
+		if st != in {
+			in = st
+			for a := range f.axes {
+				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
+			}
+		}
+		tau := math.Min(math.Max(t-st.t0, 0), st.t1-st.t0)
+		var keep [3]int
+		for a := range f.axes {
+			keep[a] = decays(st.ax[a].rate, tau, e[a][:f.axes[a].n])
+			for i := 0; i < keep[a]; i++ {
+				e[a][i] *= v[a][i]
+			}
+		}
+		sum := st.mediumC
+		for i := range st.terms {
+			term := &st.terms[i]
+			w := term.weight
+			for a := range f.axes {
+				dot := 0.0
+				for k, c := range term.x[a][:keep[a]] {
+					dot += c * e[a][k]
+				}
+				w *= dot
+			}
+			sum += w
+		}
+		out[ti] = sum
+	}
+}
+
+// productShot is a product at one instant.
+type productShot struct {
+	f    *product
+	st   *productStep
+	keep [3]int
+	amp  [][3][]float64 // by term and axis: modes at the instant
+	line [3][]float64   // scratch: one term along each axis
+}
+
+func (f *product) at(t float64) snapshot {
+	s := &f.now
+	st := f.stepAt(t)
+	s.st = st
+	tau := math.Min(math.Max(t-st.t0, 0), st.t1-st.t0)
+	for len(s.amp) < len(st.terms) {
+		var x [3][]float64
+		for a := range x {
+			x[a] = make([]float64, f.axes[a].n)
+		}
+		s.amp = append(s.amp, x)
+	}
+	for a := range f.axes {
+		var e [maxDegrees]float64
+		s.keep[a] = decays(st.ax[a].rate, tau, e[:f.axes[a].n])
+		for i := range st.terms {
+			for k, c := range st.terms[i].x[a][:s.keep[a]] {
+				s.amp[i][a][k] = c * e[k]
+			}
+		}
+	}
+	return s
+}
+
+func (s *productShot) grid(out []float64) {
+	f, st := s.f, s.st
+	if st.gridB[0] == nil {
+		for a := range f.axes {
+			st.gridB[a] = nodeModes(f.axes[a], f.nodes, a, st.ax[a].b)
+		}
+	}
+	for i := range out {
+		out[i] = st.mediumC
+	}
+	for a := range s.line {
+		if s.line[a] == nil {
+			s.line[a] = make([]float64, len(f.nodes.x[a]))
+		}
+	}
+	for t := range st.terms {
+		for a := range f.axes {
+			n := f.axes[a].n
+			for g := range s.line[a] {
+				dot := 0.0
+				for k, v := range st.gridB[a][g*n : g*n+s.keep[a]] {
+					dot += v * s.amp[t][a][k]
+				}
+				s.line[a][g] = dot
+			}
+		}
+		i := 0
+		for _, x := range s.line[0] {
+			for _, y := range s.line[1] {
+				xy := st.terms[t].weight * x * y
+				for k, z := range s.line[2] {
+					out[i+k] += xy * z
+				}
+				i += len(s.line[2])
+			}
+		}
+	}
+}
+
+func (s *productShot) slice(axis int, x coord, out []float64) {
+	f, st := s.f, s.st
+	var v [3][maxDegrees]float64
+	for a := range f.axes {
+		if a != axis {
+			modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
+		}
+	}
+	var q [maxDegrees]float64
+	for t := range st.terms {
+		w := st.terms[t].weight
+		for a := range f.axes {
+			if a == axis {
+				continue
+			}
+			dot := 0.0
+			for k, c := range s.amp[t][a][:s.keep[a]] {
+				dot += c * v[a][k]
+			}
+			w *= dot
+		}
+		for k, c := range s.amp[t][axis][:s.keep[axis]] {
+			q[k] += w * c
+		}
+	}
+	toPolynomials(f.axes[axis].n, st.ax[axis].b, q[:], out)
+	out[0] += st.mediumC
+}
+
+func (s *productShot) mean() float64 {
+	st := s.st
+	sum := st.mediumC
+	for t := range st.terms {
+		w := st.terms[t].weight
+		for a := range s.f.axes {
+			dot := 0.0
+			for k, c := range s.amp[t][a][:s.keep[a]] {
+				dot += c * st.e0[a][k]
+			}
+			w *= dot
+		}
+		sum += w
+	}
+	return sum
+}

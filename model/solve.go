@@ -1,0 +1,606 @@
+package model
+
+import (
+	"fmt"
+	"math"
+)
+
+// Goals of the error estimate by number of axes, K: resolution is raised until the estimate is below.
+var goalK = [4]float64{0, 0.004, 0.008, 0.015}
+
+// settleS is the time after a change of surroundings from which the error is estimated, s; less for small foods.
+const settleS = 60
+
+// Solve predicts the history of a product through its steps. Conduction with constant properties in each step is solved
+// without time steps: on each axis the field is a sum of polynomials whose modes decay exponentially, media that are constant
+// or straight lines in time are integrated exactly, and the field is carried from step to step by projection. The only error is
+// that of the number of polynomials; it is estimated by solving again with fewer, and the number is raised until it is small.
+//
+// It fails with cell.Errors where Check finds something. A History is for one goroutine at a time.
+func Solve(p Product, steps []Step, o Options) (*History, error) {
+	if found := Check(p, steps); found.Faults() > 0 {
+		return nil, found
+	}
+	if o.ConductivityFactor == 0 {
+		o.ConductivityFactor = 1
+	}
+	s := &solver{product: &p, steps: steps, options: o}
+	s.layOut()
+	for more := 0; ; more++ {
+		h := s.run(more)
+		s.estimate(h, more)
+		if h.ErrorK <= goalK[s.used] || s.full(more) {
+			return h, nil
+		}
+	}
+}
+
+type solver struct {
+	product *Product
+	steps   []Step
+	options Options
+	kinds   [3]axisKind
+	radii   [3]float64
+	faces   [3][2]*Face // lower and upper face by axis
+	used    int         // axes with extent
+	settle  float64     // s
+	foMin   [3]float64  // Fourier number of settle by axis
+	chain   []*chainStep
+	main    field
+}
+
+// layOut finds the axes of the product.
+func (s *solver) layOut() {
+	z := &s.product.Size
+	set := func(a int, kind axisKind, r float64, lower, upper *Face) {
+		s.kinds[a], s.radii[a], s.faces[a] = kind, r, [2]*Face{lower, upper}
+		s.used++
+	}
+	upright := func(r float64) {
+		kind := planeHalf
+		for i := range s.steps {
+			if !sameExposure(s.steps[i].on(Top), s.steps[i].on(Underside)) {
+				kind = planeFull
+			}
+		}
+		set(0, kind, r, Underside, Top)
+	}
+	switch s.product.Shape {
+	case Slab:
+		upright(z.ThicknessM / 2)
+	case Cylinder:
+		set(0, radial, z.DiameterM/2, nil, nil)
+	case Sphere:
+		set(0, spherical, z.DiameterM/2, nil, nil)
+	case ShortCylinder:
+		upright(z.LengthM / 2)
+		set(1, radial, z.DiameterM/2, Sides, Sides)
+	case Bar:
+		upright(z.ThicknessM / 2)
+		set(1, planeHalf, z.WidthM/2, Sides, Sides)
+	case Brick:
+		upright(z.ThicknessM / 2)
+		set(1, planeHalf, z.WidthM/2, Sides, Sides)
+		set(2, planeHalf, z.LengthM/2, Ends, Ends)
+	}
+	q := s.props(50)
+	alpha := q.KWmK / (q.RhoKgM3 * q.CJkgK)
+	s.settle = settleS
+	for a := 0; a < s.used; a++ {
+		s.settle = math.Min(s.settle, 0.02*s.radii[a]*s.radii[a]/alpha)
+	}
+	for i := range s.steps {
+		s.settle = math.Min(s.settle, s.steps[i].DurationS/4)
+	}
+	for a := 0; a < s.used; a++ {
+		s.foMin[a] = alpha * s.settle / (s.radii[a] * s.radii[a])
+	}
+}
+
+// props gives the food's properties at a temperature, with the run's own conductivity factor.
+func (s *solver) props(tC float64) Properties {
+	q := s.product.Food.Props(tC)
+	q.KWmK *= s.options.ConductivityFactor
+	return q
+}
+
+// degrees is the number of polynomials on an axis. The layer that a change of surroundings has warmed after settle is
+// sqrt(Fo) of the radius thick, and n polynomials resolve layers of 1/n² (they crowd towards the face), so n grows with Fo^(-1/4).
+func (s *solver) degrees(a, more int) int {
+	if s.kinds[a] == lumped {
+		return 1
+	}
+	n := 2 + 1.15*math.Pow(s.foMin[a], -0.25)
+	n *= 1 + 0.3*float64(more)
+	if s.kinds[a] == planeFull {
+		n *= 2
+	}
+	return min(max(int(math.Ceil(n)), 5), maxDegrees)
+}
+
+// full tells whether no more polynomials are to be had.
+func (s *solver) full(more int) bool {
+	for a := 0; a < s.used; a++ {
+		if s.degrees(a, more) < maxDegrees {
+			return more >= 6
+		}
+	}
+	return true
+}
+
+// fewer is the number of polynomials of the second solution, that the error is estimated with.
+func (s *solver) fewer(a, more int) int {
+	n := s.degrees(a, more)
+	switch {
+	case s.kinds[a] == lumped:
+		return 1
+	case s.kinds[a] == planeFull:
+		return n - 3
+	}
+	return n - 2
+}
+
+// grid makes axes and nodes; every other node only, if coarse.
+func (s *solver) grid(degrees func(a int) int, coarse bool) (axes [3]*axis, nd *nodes) {
+	nd = &nodes{}
+	for a := range axes {
+		axes[a] = &axis{base: baseOf(s.kinds[a], degrees(a)), radiusM: s.radii[a], lower: s.faces[a][0], upper: s.faces[a][1]}
+		nd.x[a] = nodesOf(s.kinds[a], s.used, coarse)
+		n := axes[a].n
+		nd.phi[a] = make([]float64, n*len(nd.x[a]))
+		for g, x := range nd.x[a] {
+			axes[a].values(x, nd.phi[a][g*n:g*n+n], nil)
+		}
+	}
+	return axes, nd
+}
+
+// nodesOf places the nodes of an axis: they crowd towards the faces.
+func nodesOf(kind axisKind, used int, coarse bool) []float64 {
+	if kind == lumped {
+		return []float64{0}
+	}
+	n := [4]int{0, 17, 11, 8}[used]
+	if coarse {
+		n = [4]int{0, 9, 6, 4}[used]
+	}
+	if kind == planeFull {
+		n = 2*n - 1
+	}
+	x := make([]float64, n)
+	for i := range x {
+		switch {
+		case i == 0 && kind != planeFull:
+		case i == n-1:
+			x[i] = 1
+		case kind == planeFull:
+			x[i] = -math.Cos(math.Pi * float64(i) / float64(n-1))
+			if 2*i == n-1 {
+				x[i] = 0
+			}
+		default:
+			x[i] = math.Sin(math.Pi / 2 * float64(i) / float64(n-1))
+		}
+	}
+	return x
+}
+
+// run solves the chain once, deciding on the way what depends on the temperatures: properties, films, ends of steps.
+func (s *solver) run(more int) *History {
+	h := &History{Points: append([]Point{{Name: "centre"}}, s.product.Points...)}
+	axes, nd := s.grid(func(a int) int { return s.degrees(a, more) }, false)
+	h.body = newBody(s.kinds, s.radii, nd)
+	s.chain = s.chain[:0]
+	s.main = nil
+	t := 0.0
+	lo, hi := s.product.StartC, s.product.StartC // of the food at the start of the step
+	for i := range s.steps {
+		span := Span{Step: &s.steps[i], StartS: t}
+		cs := s.ready(&span, axes, nd, lo, hi)
+		s.chain = append(s.chain, cs)
+		s.main = s.build(axes, nd, s.main)
+		h.field = s.main
+		end := t + cs.durS
+		if u := s.steps[i].UntilC; u != nil {
+			reached := false
+			cs.durS, reached = s.until(h, t, end, *u, s.steps[i].Stage.Heats)
+			span.Reached = &reached
+			if reached {
+				s.main = s.build(axes, nd, nil)
+				h.field = s.main
+			}
+		}
+		t += cs.durS
+		span.EndS = t
+		h.Spans = append(h.Spans, span)
+		if i+1 < len(s.steps) {
+			lo, hi = h.body.range_(s.main.at(t))
+		}
+		if span.MediumFromC != nil && h.Bound == "" {
+			h.Bound = fmt.Sprintf("a chill medium of %.1f °C was raised to the freezing point, %.1f °C: the food is at or below the temperatures shown until it freezes", *span.MediumFromC, *span.MediumToC)
+			h.BoundFromS = span.StartS
+		}
+	}
+	s.finish(h)
+	return h
+}
+
+// build runs the chain, or only its last step if a field that holds the others is given.
+func (s *solver) build(axes [3]*axis, nd *nodes, f field) field {
+	split := separates(axes, s.chain)
+	if p, ok := f.(*product); ok && split {
+		p.run(s.chain[len(s.chain)-1])
+		return p
+	}
+	if t, ok := f.(*tensor); ok && !split {
+		t.run(s.chain[len(s.chain)-1])
+		return t
+	}
+	if split {
+		p := newProduct(axes, nd, s.product.StartC)
+		for _, cs := range s.chain {
+			p.run(cs)
+		}
+		return p
+	}
+	t := newTensor(axes, nd, s.product.StartC)
+	for _, cs := range s.chain {
+		t.run(cs)
+	}
+	return t
+}
+
+// ready decides the properties and films of the next step. The properties are those at the mean of the coldest and hottest
+// food in the step, counting anything above 100 °C as 100; lo and hi are the food's at its start.
+func (s *solver) ready(span *Span, axes [3]*axis, nd *nodes, lo, hi float64) *chainStep {
+	st := span.Step
+	cold, hot := lo, hi // first guess: the food comes all the way to its media
+	for _, e := range exposures(s.product.Shape, st) {
+		for _, m := range s.raised(st, e, nil).C {
+			cold, hot = math.Min(cold, m), math.Max(hot, m)
+		}
+	}
+	constant := !s.product.Food.Composed
+	for try := 0; ; try++ {
+		mean := (math.Min(cold, 100) + math.Min(hot, 100)) / 2
+		cs := s.film(span, mean)
+		if try == 2 || constant && !s.filmsDepend(st) {
+			return cs
+		}
+		s.chain = append(s.chain, cs)
+		f := s.build(axes, nd, nil)
+		s.chain = s.chain[:len(s.chain)-1]
+		body := newBody(s.kinds, s.radii, nd)
+		cold, hot = lo, hi
+		for k := 1; k <= 8; k++ {
+			a, b := body.range_(f.at(span.StartS + cs.durS*float64(k*k)/64))
+			cold, hot = math.Min(cold, a), math.Max(hot, b)
+		}
+	}
+}
+
+// filmsDepend tells whether a film of the step depends on the food's temperature.
+func (s *solver) filmsDepend(st *Step) bool {
+	for _, e := range exposures(s.product.Shape, st) {
+		if (e.Surface == StillAir || e.Surface == MovingAir) && e.FilmW == nil {
+			return true
+		}
+	}
+	return false
+}
+
+// film makes a step ready with properties and films at a mean temperature of the food.
+func (s *solver) film(span *Span, meanC float64) *chainStep {
+	st := span.Step
+	span.Props, span.PropsAtC = s.props(meanC), meanC
+	span.Films = span.Films[:0]
+	cs := &chainStep{durS: st.DurationS, props: span.Props}
+	cs.media, cs.knots = cs.media[:0], []float64{0}
+	done := map[*Exposure]film{}
+	on := func(face *Face) film {
+		e := &st.Exposure
+		if face != nil {
+			e = st.on(face)
+		}
+		if f, ok := done[e]; ok {
+			return f
+		}
+		m := s.raised(st, e, span)
+		fc := filmCase{shape: s.product.Shape, size: s.product.Size, foodC: meanC, mediumC: m.meanC(st.DurationS), altitudeM: st.AltitudeM}
+		if e.AirMS != nil {
+			fc.airMS = *e.AirMS
+		}
+		if e == &st.Exposure {
+			face = nil
+		}
+		used := e.filmUsed(face, &fc)
+		span.Films = append(span.Films, used)
+		f := film{u: used.TotalW, group: -1}
+		if !e.Surface.NoMedium {
+			f.group = cs.group(m, st.DurationS)
+		}
+		done[e] = f
+		return f
+	}
+	if s.used == 0 {
+		f := on(nil)
+		if f.group >= 0 {
+			heat := span.Props.RhoKgM3 * span.Props.CJkgK * s.product.Size.VolumeM3
+			cs.lumpW = math.Min(f.u, 1e6) * s.product.Size.AreaM2 / heat
+			cs.lumpG = []float64{cs.lumpW}
+		}
+		return cs
+	}
+	for a := 0; a < s.used; a++ {
+		cs.up[a] = on(s.faces[a][1])
+		cs.lo[a] = film{group: -1}
+		if s.kinds[a] == planeFull {
+			cs.lo[a] = on(s.faces[a][0])
+		}
+	}
+	for a := s.used; a < 3; a++ {
+		cs.lo[a], cs.up[a] = film{group: -1}, film{group: -1}
+	}
+	return cs
+}
+
+// group finds or adds a medium and the instants at which it changes its slope.
+func (cs *chainStep) group(m Course, durS float64) int {
+	for g := range cs.media {
+		if sameCourse(&cs.media[g], &m) {
+			return g
+		}
+	}
+	cs.media = append(cs.media, m)
+	if len(m.TimesS) > 1 {
+		for _, t := range m.TimesS {
+			if t > 0 && t < durS {
+				cs.knots = append(cs.knots, t)
+			}
+		}
+		cs.knots = rising(cs.knots)
+	}
+	return len(cs.media) - 1
+}
+
+// meanC is the mean of a medium over a step.
+func (m *Course) meanC(durS float64) float64 {
+	if len(m.C) == 0 {
+		return 0
+	}
+	if len(m.C) == 1 {
+		return m.C[0]
+	}
+	sum, last, lastC := 0.0, 0.0, m.C[0]
+	for i, t := range m.TimesS {
+		t = math.Min(t, durS)
+		c := lineAt(m.TimesS, m.C, t)
+		sum += (t - last) * (c + lastC) / 2
+		last, lastC = t, c
+		if m.TimesS[i] >= durS {
+			break
+		}
+	}
+	return sum / last
+}
+
+// raised gives a medium with everything below the freezing point raised to it, where the stage allows that, and notes it in span.
+func (s *solver) raised(st *Step, e *Exposure, span *Span) Course {
+	m := e.Medium
+	tf := s.product.Food.FreezingC
+	if tf == nil || !raises(st.Stage) {
+		return m
+	}
+	low := math.Inf(1)
+	for _, c := range m.C {
+		low = math.Min(low, c)
+	}
+	if low >= *tf {
+		return m
+	}
+	if span != nil && (span.MediumFromC == nil || low < *span.MediumFromC) {
+		span.MediumFromC, span.MediumToC = &low, tf
+	}
+	out := Course{Name: m.Name}
+	for i, c := range m.C {
+		t := 0.0
+		if len(m.TimesS) > 0 {
+			t = m.TimesS[i]
+		}
+		if i > 0 && (m.C[i-1]-*tf)*(c-*tf) < 0 { // where the line crosses the freezing point
+			out.TimesS = append(out.TimesS, m.TimesS[i-1]+(t-m.TimesS[i-1])*(*tf-m.C[i-1])/(c-m.C[i-1]))
+			out.C = append(out.C, *tf)
+		}
+		out.TimesS, out.C = append(out.TimesS, t), append(out.C, math.Max(c, *tf))
+	}
+	return out
+}
+
+func sameCourse(a, b *Course) bool {
+	if len(a.C) != len(b.C) {
+		return false
+	}
+	for i := range a.C {
+		if a.C[i] != b.C[i] || len(a.C) > 1 && a.TimesS[i] != b.TimesS[i] {
+			return false
+		}
+	}
+	return true
+}
+
+// sameExposure tells whether two faces meet the same.
+func sameExposure(a, b *Exposure) bool {
+	same := func(x, y *float64) bool { return x == nil && y == nil || x != nil && y != nil && *x == *y }
+	return a == b || a.Surface == b.Surface && same(a.FilmW, b.FilmW) && same(a.AirMS, b.AirMS) && same(a.WrapM2KW, b.WrapM2KW) &&
+		sameCourse(&a.Medium, &b.Medium)
+}
+
+// until finds when the slowest place reaches a temperature between from and to: the length of the step.
+func (s *solver) until(h *History, from, to, goal float64, heats bool) (durS float64, reached bool) {
+	s.hulls(h)
+	short := func(t float64) float64 { // above 0: not there yet
+		low, high := h.body.extremes(s.main.at(t))
+		if heats {
+			return goal - low.c
+		}
+		return high.c - goal
+	}
+	last := from
+	for _, t := range stepTimes(from, to, s.settle, nil) {
+		if short(t) > 0 {
+			last = t
+			continue
+		}
+		lo, hi := last, t
+		for hi-lo > 1e-4 {
+			if mid := (lo + hi) / 2; short(mid) > 0 {
+				lo = mid
+			} else {
+				hi = mid
+			}
+		}
+		if hi-from < 1e-3 { // already there: a step of no length cannot be drawn or judged
+			hi = from + 1e-3
+		}
+		return hi - from, true
+	}
+	return to - from, false
+}
+
+// estimate solves again with fewer polynomials and takes the largest difference at the nodes, from settle after each change.
+func (s *solver) estimate(h *History, more int) {
+	if s.used == 0 {
+		h.ErrorK = 0
+		return
+	}
+	axes, nd := s.grid(func(a int) int { return s.fewer(a, more) }, true)
+	low := s.build(axes, nd, nil)
+	_, own := s.grid(func(a int) int { return s.degrees(a, more) }, true)
+	fine := s.main
+	swap := func(n *nodes) *nodes {
+		var old *nodes
+		switch f := fine.(type) {
+		case *tensor:
+			old, f.nodes = f.nodes, n
+			f.forget()
+		case *product:
+			old, f.nodes = f.nodes, n
+			f.forget()
+		}
+		return old
+	}
+	wide := swap(own)
+	a, b := make([]float64, nd.count()), make([]float64, nd.count())
+	worst := 0.0
+	for i := range h.Spans {
+		sp := &h.Spans[i]
+		for tau := s.settle; ; tau *= 2 {
+			t := math.Min(sp.StartS+tau, sp.EndS)
+			fine.at(t).grid(a)
+			low.at(t).grid(b)
+			for k := range a {
+				worst = math.Max(worst, math.Abs(a[k]-b[k]))
+			}
+			if t == sp.EndS {
+				break
+			}
+		}
+	}
+	swap(wide)
+	h.ErrorK = math.Max(worst, 1e-5)
+}
+
+// forget drops what was made for the nodes.
+func (f *tensor) forget() {
+	for _, st := range f.steps {
+		st.gridB, st.steady, st.creep = [3][]float64{}, nil, nil
+	}
+}
+
+func (f *product) forget() {
+	for _, st := range f.steps {
+		st.gridB = [3][]float64{}
+	}
+	f.now.line = [3][]float64{}
+}
+
+// hulls bounds the food by span: nothing conducts beyond the range of its start and its media so far.
+func (s *solver) hulls(h *History) {
+	h.hull = h.hull[:0]
+	lo, hi := s.product.StartC, s.product.StartC
+	for _, cs := range s.chain {
+		for g := range cs.media {
+			for _, c := range cs.media[g].C {
+				lo, hi = math.Min(lo, c), math.Max(hi, c)
+			}
+		}
+		h.hull = append(h.hull, [2]float64{lo, hi})
+	}
+}
+
+// finish fills the functions of the history.
+func (s *solver) finish(h *History) {
+	s.hulls(h)
+	f := s.main
+	h.Course = func(p Place, times, out []float64) {
+		f.course(h.body.coord(p), times, out)
+		for i, t := range times {
+			out[i] = h.within(t, out[i])
+		}
+	}
+	h.At = func(p Place, t float64) float64 {
+		times, out := [1]float64{t}, [1]float64{}
+		f.course(h.body.coord(p), times[:], out[:])
+		return h.within(t, out[0])
+	}
+	spans := h.Spans
+	h.MediumC = func(t float64) float64 {
+		sp := &spans[spanAt(spans, t)]
+		m := &sp.Step.Medium
+		switch len(m.C) {
+		case 0:
+			return math.NaN()
+		case 1:
+			return m.C[0]
+		}
+		return lineAt(m.TimesS, m.C, t-sp.StartS)
+	}
+	h.HumidityPc = func(t float64) float64 { return humidityAt(spans, t) }
+	h.settle = s.settle
+	h.Method = s.method()
+}
+
+// within keeps a temperature inside the range that conduction allows.
+func (h *History) within(t, c float64) float64 {
+	r := h.hull[spanAt(h.Spans, t)]
+	return math.Max(r[0], math.Min(r[1], c))
+}
+
+// method says in words how the history was solved.
+func (s *solver) method() string {
+	if s.used == 0 {
+		return "well mixed: one temperature, exact in time"
+	}
+	n := ""
+	for a := 0; a < s.used; a++ {
+		if a > 0 {
+			n += " × "
+		}
+		n += fmt.Sprint(axisSize(s.main, a))
+	}
+	form := "polynomials through the food"
+	if _, ok := s.main.(*product); ok {
+		form = "polynomials, as products of axes"
+	}
+	return fmt.Sprintf("conduction, constant properties in each step, exact in time; %s %s", n, form)
+}
+
+func axisSize(f field, a int) int {
+	switch f := f.(type) {
+	case *tensor:
+		return f.axes[a].n
+	case *product:
+		return f.axes[a].n
+	}
+	return 0
+}
