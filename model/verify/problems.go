@@ -1,0 +1,97 @@
+package verify
+
+import (
+	"slowpoint/model"
+	"slowpoint/model/food"
+)
+
+// oneFood is a body of one axis of given properties in one step.
+func oneFood(shape *model.Shape, radiusM float64, p model.Properties, startC float64, s model.Step) Problem {
+	b := body(shape, radiusM, startC)
+	b.Food = material(p)
+	return Problem{shape.Name, b, []model.Step{s}}
+}
+
+// diffusing gives properties from conductivity, W/(m·K), and diffusivity, m²/s.
+func diffusing(k, alpha float64) model.Properties {
+	return model.Properties{KWmK: k, RhoKgM3: 1000, CJkgK: k / alpha / 1000}
+}
+
+func textbookCases() []Case {
+	steak := oneFood(model.Slab, 0.01, diffusing(0.45, 0.91e-7), 25, step("freezer air", 3*3600, exposure(9, -11)))
+	carcass := oneFood(model.Cylinder, 0.12, diffusing(0.47, 0.13e-6), 37, step("cold air", 24*3600, exposure(22, -10)))
+	egg := oneFood(model.Sphere, 0.025, diffusing(0.627, 0.151e-6), 5, step("hot water", 3600, exposure(1200, 95)))
+	apple := oneFood(model.Sphere, 0.045, diffusing(0.418, 1.3e-7), 20, step("freezer", 3600, exposure(8, -15)))
+	roast := oneFood(model.Sphere, 0.0710, model.Properties{KWmK: 0.5, RhoKgM3: 1000, CJkgK: 4000}, 20, step("oven", 4*3600, exposure(18, 163)))
+	return []Case{
+		{"steak of 20 mm chilled until its surface is at 2 °C", Textbook, "Cengel, Heat Transfer, problem 11-44 with the publisher's solution: 93.1 min", "min", 93.1, 0.1, in(60, steak.passes(model.Place{UpM: 0.01}, 2))},
+		{"beef carcass as a cylinder of 240 mm: centre down to 4 °C (no freezing in the problem)", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, 6th ed., problem 4-65: 12.2 h", "h", 12.2, 0.1, in(3600, carcass.passes(model.Place{}, 4))},
+		{"egg as a sphere of 50 mm: centre up to 70 °C", Textbook, "Cengel, Heat Transfer, Example 4-3: 14.4 min with the coefficients of its table", "min", 14.4, 0.1, in(60, egg.passes(model.Place{}, 70))},
+		{"apple of 90 mm after an hour in the freezer: centre", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, problem of the apple: 11.2 °C by the one-term solution", "°C", 11.2, 0.15, apple.at(model.Place{}, 3600)},
+		{"apple of 90 mm after an hour in the freezer: surface", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, problem of the apple: 2.7 °C by the one-term solution", "°C", 2.7, 0.15, apple.at(model.Place{UpM: 0.045}, 3600)},
+		{"roast of 1.5 kg as a sphere: centre up to 77 °C", Textbook, "Kreith, Principles of Heat Transfer, problem of the roast: 134 min in its solution", "min", 134, 1.34, in(60, roast.passes(model.Place{}, 77))},
+	}
+}
+
+func propertyCases() []Case {
+	const source = "arithmetic, apart from this program, on the polynomials of Choi & Okos (1986) as in ASHRAE Handbook – Refrigeration (2006), chapter 9, Tables 1 and 2, with the rule of Levy (1981)"
+	meat := food.Composition{WaterPc: 72, ProteinPc: 21, FatPc: 6, AshPc: 1}
+	starchy := food.Composition{WaterPc: 70, ProteinPc: 3, FatPc: 2, CarbohydratePc: 22, FibrePc: 2, AshPc: 1}
+	of := func(c food.Composition, t float64, what func(model.Properties) float64) func() (float64, error) {
+		return func() (float64, error) {
+			m, err := food.Compose("test input", "input of the case", c)
+			if err != nil {
+				return 0, err
+			}
+			return what(m.Props(t)), nil
+		}
+	}
+	conductivity := func(p model.Properties) float64 { return p.KWmK }
+	heat := func(p model.Properties) float64 { return p.CJkgK }
+	density := func(p model.Properties) float64 { return p.RhoKgM3 }
+	return []Case{
+		{"water at 20 °C: specific heat", Properties, source, "J/(kg·K)", 4176.57, 0.01, of(food.Composition{WaterPc: 100}, 20, heat)},
+		{"meat at 70 °C: conductivity", Properties, source, "W/(m·K)", 0.524977, 1e-6, of(meat, 70, conductivity)},
+		{"meat at 5 °C: density", Properties, source, "kg/m³", 1053.2902, 1e-3, of(meat, 5, density)},
+		{"starchy food at 20 °C: conductivity", Properties, source, "W/(m·K)", 0.492883, 1e-6, of(starchy, 20, conductivity)},
+		{"starchy food at 70 °C: specific heat", Properties, source, "J/(kg·K)", 3457.177, 1e-2, of(starchy, 70, heat)},
+	}
+}
+
+func practiceCases() []Case {
+	// A hen's egg, 42 mm across, of the composition of whole egg, from room temperature. A sphere of its width is on the fast side, the film
+	// of boiling water is the lowest of the published range.
+	egg, ok := food.Named("Egg, whole, raw")
+	if !ok {
+		panic("verify: no egg among the foods") // our own table
+	}
+	egg.Flow = model.FlowsNo // within its shell
+	p := Problem{"egg", model.Product{Name: "egg", Shape: model.Sphere, Size: model.Size{DiameterM: 0.042}, Food: egg, StartC: 20}, []model.Step{step("boil", 1800, exposure(2500, 100))}}
+	return []Case{{"hen's egg in boiling water, set to the centre (65 °C)", Practice, "common practice, no source: roughly 7 min", "min", 7, 2, in(60, p.passes(model.Place{}, 65))}}
+}
+
+func measuredCases() []Case {
+	const source = "measured, mean of six: Burfoot et al., Int. J. Food Sci. Technol. 25 (1990) 657-667, as given in James & James, Meat Refrigeration (2002), Table 16.7; " +
+		"film 16.5 W/(m²·K) = 11.7 by Churchill & Bernstein (1977) for air at 1.2 m/s + 4.8 by radiation; composition of braised beef"
+	beef, ok := food.Named("Beef, brisket, flat half, lean, braised")
+	if !ok {
+		panic("verify: no braised beef among the foods") // our own table
+	}
+	h := 16.5
+	p := Problem{"rolled beef", model.Product{Name: "rolled beef", Shape: model.ShortCylinder, Size: model.Size{DiameterM: 0.11, LengthM: 0.271}, Food: beef, StartC: 75},
+		[]model.Step{step("chill", 10*3600, exposure(h, 0))}}
+	between := func(fromC, toC float64) func() (float64, error) {
+		return func() (float64, error) {
+			start, err := p.passes(model.Place{}, fromC)()
+			if err != nil {
+				return 0, err
+			}
+			end, err := p.passes(model.Place{}, toC)()
+			return (end - start) / 3600, err
+		}
+	}
+	return []Case{
+		{"rolled beef forequarter, 110 mm, 2.7 kg, cooked to 75 °C, in air of 0 °C: centre from 70 to 10 °C", Measured, source, "h", 5.1, 0.51, between(70, 10)},
+		{"rolled beef forequarter, 110 mm, 2.7 kg, cooked to 75 °C, in air of 0 °C: centre from 50 to 10 °C", Measured, source, "h", 4.4, 0.44, between(50, 10)},
+	}
+}

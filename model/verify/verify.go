@@ -1,0 +1,73 @@
+// Package verify holds problems whose answer is known from outside this program: closed forms, exact series and independent
+// solutions, textbook problems, measured cooling. The tests, the command that verifies an installation and the report use the one list.
+package verify
+
+import "math"
+
+// Case is one question with a known answer.
+type Case struct {
+	Name      string
+	Area      string // one of Areas
+	Source    string // where the answer comes from; never empty
+	Unit      string // of Expected, Allowance and what Got returns
+	Expected  float64
+	Allowance float64 // the largest difference that passes
+	Got       func() (float64, error)
+}
+
+// The areas, in the order of the list.
+const (
+	Series     = "series"
+	Products   = "products of series"
+	HalfSpace  = "half space"
+	Ramp       = "rising medium"
+	Chain      = "chain of steps"
+	LongTime   = "long and short times"
+	Reference  = "reference problem"
+	Textbook   = "textbook problem"
+	Properties = "properties"
+	Practice   = "common practice"
+	Measured   = "measured"
+)
+
+// Areas tells what each area is held to.
+var Areas = []struct{ Name, Help string }{
+	{Series, "uniform start, one step: slab, cylinder, sphere against exact series"},
+	{Products, "short cylinder and brick against products of exact series"},
+	{HalfSpace, "the first minutes near a face, against the closed form"},
+	{Ramp, "a medium that rises steadily, against the exact integral"},
+	{Chain, "other surroundings in every step, and the rise after the oven, against exact projections"},
+	{LongTime, "the limits of long and short times"},
+	{Reference, "whole chains in one, two and three directions, against independent solutions by two methods"},
+	{Textbook, "problems with a printed answer; the allowance is that of the print"},
+	{Properties, "properties from composition, against arithmetic on the published polynomials"},
+	{Practice, "what every kitchen knows, with a wide allowance"},
+	{Measured, "measured cooling, which no calculation meets better than food varies"},
+}
+
+// Result is what this program gives for a case.
+type Result struct {
+	Case Case
+	Got  float64 // in the case's unit; NaN with an error
+	Err  error
+	Met  bool // Got is within the allowance
+}
+
+// Run works one case out.
+func Run(c Case) Result {
+	got, err := c.Got()
+	if err != nil {
+		return Result{Case: c, Got: math.NaN(), Err: err}
+	}
+	return Result{Case: c, Got: got, Met: math.Abs(got-c.Expected) <= c.Allowance}
+}
+
+// Cases lists every case, area by area.
+func Cases() []Case {
+	var all []Case
+	for _, list := range [][]Case{seriesCases(), productCases(), halfSpaceCases(), rampCases(), chainCases(), limitCases(), referenceCases(), textbookCases(),
+		propertyCases(), practiceCases(), measuredCases()} {
+		all = append(all, list...)
+	}
+	return all
+}
