@@ -209,11 +209,10 @@ func citation(l *rules.Limit) string {
 	add("clause ", l.Clause)
 	add("edition ", l.Edition)
 	add("issued by ", l.IssuedBy)
-	s := strings.Join(parts, ", ")
 	if strings.TrimSpace(l.Code) == "" {
-		s = strings.TrimPrefix("no code named, "+s, ", ")
-		s = strings.TrimSuffix(s, ", ")
+		parts = append([]string{"no code named"}, parts...)
 	}
+	s := strings.Join(parts, ", ")
 	switch by, on := strings.TrimSpace(l.ConfirmedBy), strings.TrimSpace(l.ConfirmedOn); {
 	case by != "" && on != "":
 		s += "; confirmed by " + by + " on " + on

@@ -151,10 +151,10 @@ func (j *JSON) Add(p *Product) error {
 	j.text("why", p.Judgement.Why)
 	j.text("method", w.Method)
 	j.value("recorded", w.Recorded)
-	j.value("error_K", figure(&w.ErrorK))
+	j.value("error_K", tenFigures(&w.ErrorK))
 	j.text("bound", w.Bound)
 	if w.Bound != "" {
-		j.value("bound_from_s", exact(&w.BoundFromS))
+		j.value("bound_from_s", exactNumber(&w.BoundFromS))
 	}
 	j.samples(p)
 	list(j, "steps", stepsOf(w.Spans), false)
@@ -210,16 +210,12 @@ func (j *JSON) Close() error {
 		return err
 	}
 	j.buf.Reset(j.w)
-	date := ""
-	if !j.h.Date.IsZero() {
-		date = j.h.Date.Format("2006-01-02")
-	}
 	j.put("{\n")
 	j.text("schema", Schema)
 	j.text("version", j.h.Version)
-	j.text("date", date)
+	j.text("date", isoDate(j.h))
 	j.value("plan", planJSON{Name: j.h.Plan, SHA256: j.h.SHA256, Items: itemsOf(j.h.Items)})
-	j.value("every_s", exact(&j.h.EveryS))
+	j.value("every_s", exactNumber(&j.h.EveryS))
 	list(j, "problems", problemsOf(j.h.Problems), false)
 	list(j, "not_calculated", notCalculatedOf(j.h.NotCalculated), false)
 	list(j, "known_answers", knownOf(j.h.Known), false)
@@ -336,29 +332,21 @@ func encode(v any) []byte {
 	return bytes.TrimRight(b.Bytes(), "\n")
 }
 
-// exact, fixed and figure write a number that may not exist: with every digit, with so many decimals, with ten figures.
-func exact(v *float64) json.RawMessage { return fixed(v, -1) }
+// exactNumber, fixedNumber and tenFigures write a number that may not exist: with every digit, with so many decimals, with ten figures.
+func exactNumber(v *float64) json.RawMessage { return fixedNumber(v, -1) }
 
-func fixed(v *float64, decimals int) json.RawMessage {
+func fixedNumber(v *float64, decimals int) json.RawMessage {
 	if !finite(v) {
 		return nil
 	}
 	return appendNumber(nil, *v, decimals)
 }
 
-func figure(v *float64) json.RawMessage {
+func tenFigures(v *float64) json.RawMessage {
 	if !finite(v) {
 		return nil
 	}
 	return strconv.AppendFloat(nil, *v+0, 'g', 10, 64)
-}
-
-// overall is the verdict of a product: one of three words.
-func overall(v rules.Verdict) rules.Verdict {
-	if v == rules.NotApplicable {
-		return rules.CannotTell
-	}
-	return v
 }
 
 // join is the word of the column Join.
@@ -405,7 +393,7 @@ func knownOf(ks []KnownAnswer) []knownJSON {
 	out := make([]knownJSON, 0, len(ks))
 	for i := range ks {
 		k := &ks[i]
-		out = append(out, knownJSON{k.Name, k.Source, figure(&k.Expected), figure(&k.Got), figure(&k.Allowance), k.Unit, k.OK})
+		out = append(out, knownJSON{k.Name, k.Source, tenFigures(&k.Expected), tenFigures(&k.Got), tenFigures(&k.Allowance), k.Unit, k.OK})
 	}
 	return out
 }
@@ -414,10 +402,10 @@ func stepsOf(spans []model.Span) []stepJSON {
 	out := make([]stepJSON, 0, len(spans))
 	for i := range spans {
 		sp := &spans[i]
-		s := stepJSON{Start: exact(&sp.StartS), End: exact(&sp.EndS), Reached: sp.Reached,
-			RaisedFrom: fixed(sp.MediumFromC, 5), RaisedTo: fixed(sp.MediumToC, 5), Films: []filmJSON{}}
+		s := stepJSON{Start: exactNumber(&sp.StartS), End: exactNumber(&sp.EndS), Reached: sp.Reached,
+			RaisedFrom: fixedNumber(sp.MediumFromC, 5), RaisedTo: fixedNumber(sp.MediumToC, 5), Films: []filmJSON{}}
 		if st := sp.Step; st != nil {
-			s.Step, s.Measured, s.Until = st.Name, st.Measured, fixed(st.UntilC, 5)
+			s.Step, s.Measured, s.Until = st.Name, st.Measured, fixedNumber(st.UntilC, 5)
 			if st.Stage != nil {
 				s.Stage = st.Stage.Name
 			}
@@ -426,11 +414,11 @@ func stepsOf(spans []model.Span) []stepJSON {
 			}
 		}
 		if pr := &sp.Props; pr.KWmK > 0 {
-			s.PropsAt, s.K, s.Rho, s.C = fixed(&sp.PropsAtC, 5), figure(&pr.KWmK), figure(&pr.RhoKgM3), figure(&pr.CJkgK)
+			s.PropsAt, s.K, s.Rho, s.C = fixedNumber(&sp.PropsAtC, 5), tenFigures(&pr.KWmK), tenFigures(&pr.RhoKgM3), tenFigures(&pr.CJkgK)
 		}
 		for k := range sp.Films {
 			f := &sp.Films[k]
-			s.Films = append(s.Films, filmJSON{faceName(f.Face), figure(&f.FilmW), figure(&f.TotalW), f.Typed, f.Source, f.Caution})
+			s.Films = append(s.Films, filmJSON{faceName(f.Face), tenFigures(&f.FilmW), tenFigures(&f.TotalW), f.Typed, f.Source, f.Caution})
 		}
 		out = append(out, s)
 	}
@@ -449,9 +437,9 @@ func findingsOf(fs []rules.Finding) []findingJSON {
 	out := make([]findingJSON, 0, len(fs))
 	for i := range fs {
 		f := &fs[i]
-		one := findingJSON{Level: f.Level, Verdict: f.Verdict.String(), Value: figure(f.Value), Required: figure(f.Required), Unit: f.Unit,
-			MarginK: fixed(f.MarginK, 4), MarginS: fixed(f.MarginS, 4), AtS: exact(f.AtS), Place: f.PlaceName,
-			ClockStart: exact(f.ClockStartS), ClockEnd: exact(f.ClockEndS), Cells: cellNames(f.Cells), Why: f.Why,
+		one := findingJSON{Level: f.Level, Verdict: f.Verdict.String(), Value: tenFigures(f.Value), Required: tenFigures(f.Required), Unit: f.Unit,
+			MarginK: fixedNumber(f.MarginK, 4), MarginS: fixedNumber(f.MarginS, 4), AtS: exactNumber(f.AtS), Place: f.PlaceName,
+			ClockStart: exactNumber(f.ClockStartS), ClockEnd: exactNumber(f.ClockEndS), Cells: cellNames(f.Cells), Why: f.Why,
 			Notes: append([]string{}, f.Notes...), LowConductivity: f.LowConductivity}
 		if f.Place != nil {
 			one.AtMM = appendPlace(nil, *f.Place)

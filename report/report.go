@@ -24,6 +24,7 @@ type Head struct {
 	NotCalculated []NotCalculated
 	Known         []KnownAnswer // solved by this very program
 	Products      int           // how many are calculated
+	MostPoints    int           // the largest number of points of a product, the centre counted: columns of the sheet Courses
 }
 
 // Item is a row of the sheet Plan.

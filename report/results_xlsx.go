@@ -1,0 +1,596 @@
+package report
+
+import (
+	"bytes"
+	"errors"
+	"fmt"
+	"io"
+	"math"
+	"strconv"
+	"strings"
+
+	"github.com/xuri/excelize/v2"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/rules"
+)
+
+// mostRows is how many rows a sheet takes before it goes on in a second one; a spreadsheet program holds 1,048,576.
+const mostRows = 1_000_000
+
+// gridColumn is a column of a results sheet. A number is written with so many decimals at most; its looks are a number format.
+type gridColumn struct {
+	head     string
+	width    float64 // in characters
+	decimals int
+}
+
+// grid is a sheet that is written row by row and goes on in NAME 2, NAME 3, … when it is full.
+type grid struct {
+	name    string
+	columns []gridColumn
+	letters []string
+	most    int // rows a page, the heading included
+	paper   string
+	pages   []*part
+	ends    []int // last row of each finished page
+	row     int   // last row written on the current page
+	col     int   // last column written in it
+	b       []byte
+	n       []byte // the row's number
+	err     error
+}
+
+func newGrid(name string, columns []gridColumn, paper string) *grid {
+	return &grid{name: name, columns: columns, paper: paper, most: mostRows}
+}
+
+// room makes sure that n rows stand together if a page can hold them.
+func (g *grid) room(n int) {
+	if len(g.pages) == 0 || g.row+n > g.most && g.row > 1 {
+		g.turn()
+	}
+}
+
+// turn begins a page with its headings.
+func (g *grid) turn() {
+	g.finish("")
+	g.pages, g.row = append(g.pages, newPart()), 0
+	g.b = append(g.b[:0], `<?xml version="1.0" encoding="UTF-8" standalone="yes"?>`+"\n"+
+		`<worksheet xmlns="http://schemas.openxmlformats.org/spreadsheetml/2006/main"><sheetPr><pageSetUpPr fitToPage="1"/></sheetPr>`+
+		`<sheetViews><sheetView workbookViewId="0"><pane ySplit="1" topLeftCell="A2" activePane="bottomLeft" state="frozen"/></sheetView></sheetViews><cols>`...)
+	for i, c := range g.columns {
+		g.b = append(g.b, fmt.Sprintf(`<col min="%d" max="%d" width="%g" customWidth="1"/>`, i+1, i+1, c.width)...)
+	}
+	g.b = append(g.b, `</cols><sheetData>`...)
+	g.begin()
+	for _, c := range g.columns {
+		g.styled(c.head, headingStyle)
+	}
+	g.end()
+}
+
+// finish ends the current page; filter is the range with the filter buttons, "" for the whole table.
+func (g *grid) finish(filter string) {
+	if len(g.pages) == 0 {
+		return
+	}
+	if filter == "" {
+		filter = g.table(g.row)
+	}
+	size := 9 // A4
+	if g.paper == "Letter" {
+		size = 1
+	}
+	_, err := fmt.Fprintf(g.pages[len(g.pages)-1], `</sheetData><autoFilter ref="%s"/><pageMargins left="0.5" right="0.5" top="0.6" bottom="0.6" header="0.3" footer="0.3"/>`+
+		`<pageSetup paperSize="%d" orientation="landscape" fitToWidth="1" fitToHeight="0"/></worksheet>`, filter, size)
+	g.fail(err)
+	g.ends = append(g.ends, g.row)
+}
+
+// table is the range of the headings and the rows below them.
+func (g *grid) table(last int) string {
+	return "A1:" + cell.ColumnName(len(g.columns)) + strconv.Itoa(last)
+}
+
+func (g *grid) fail(err error) {
+	if g.err == nil {
+		g.err = err
+	}
+}
+
+func (g *grid) begin() {
+	g.row++
+	g.col = 0
+	g.n = strconv.AppendInt(g.n[:0], int64(g.row), 10)
+	g.b = append(append(append(g.b, `<row r="`...), g.n...), `">`...)
+}
+
+func (g *grid) end() {
+	g.b = append(g.b, `</row>`...)
+	_, err := g.pages[len(g.pages)-1].Write(g.b)
+	g.fail(err)
+	g.b = g.b[:0]
+}
+
+// cell opens the next cell up to its attributes.
+func (g *grid) cell(style int) {
+	g.col++
+	for len(g.letters) < g.col {
+		g.letters = append(g.letters, cell.ColumnName(len(g.letters)+1))
+	}
+	g.b = append(append(append(g.b, `<c r="`...), g.letters[g.col-1]...), g.n...)
+	g.b = append(g.b, '"')
+	if style > 0 {
+		g.b = append(append(g.b, ` s="`...), strconv.Itoa(style)...)
+		g.b = append(g.b, '"')
+	}
+}
+
+func (g *grid) skip() { g.col++ }
+
+func (g *grid) text(s string) { g.styled(s, plainStyle) }
+
+// styled writes a text; never a formula, whatever it begins with.
+func (g *grid) styled(s string, style int) {
+	if s == "" {
+		g.skip()
+		return
+	}
+	g.cell(style)
+	g.b = append(g.b, ` t="inlineStr"><is><t xml:space="preserve">`...)
+	g.b = append(xmlText(g.b, s), `</t></is></c>`...)
+}
+
+// number writes a number; one that does not exist leaves the cell blank.
+func (g *grid) number(v float64) {
+	if math.IsNaN(v) || math.IsInf(v, 0) {
+		g.skip()
+		return
+	}
+	decimals := 6
+	if g.col < len(g.columns) {
+		decimals = g.columns[g.col].decimals
+	}
+	g.cell(numberStyle)
+	g.b = append(appendNumber(append(g.b, `><v>`...), v, decimals), `</v></c>`...)
+}
+
+// maybe writes a number that may be missing, times a factor.
+func (g *grid) maybe(v *float64, factor float64) {
+	if v == nil {
+		g.skip()
+		return
+	}
+	g.number(*v * factor)
+}
+
+// words writes a row of texts.
+func (g *grid) words(texts ...string) {
+	g.room(1)
+	g.begin()
+	for _, s := range texts {
+		g.text(s)
+	}
+	g.end()
+}
+
+// The styles, in the order in which they are made.
+const (
+	plainStyle   = iota + 1 // text, wrapped never
+	headingStyle            // bold, wrapped, on grey
+	numberStyle             // at most three decimals shown; the cell holds more
+)
+
+func makeStyles(f *excelize.File) error {
+	shown := "0.00###"
+	for want, s := range []*excelize.Style{
+		{NumFmt: 49},
+		{Font: &excelize.Font{Bold: true}, Alignment: &excelize.Alignment{WrapText: true, Vertical: "top"},
+			Fill: excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{"E6E6E6"}}},
+		{CustomNumFmt: &shown},
+	} {
+		id, err := f.NewStyle(s)
+		if err != nil {
+			return err
+		}
+		if id != want+1 {
+			return fmt.Errorf("results.xlsx: style %d came out as %d", want+1, id)
+		}
+	}
+	return nil
+}
+
+// Workbook writes results.xlsx: the sheets Overview, Findings, Courses and Input. A product is written and forgotten;
+// only a row for the overview is kept. Problems and NotCalculated of the head may grow until Close.
+type Workbook struct {
+	w                        io.Writer
+	h                        *Head
+	rows                     []slim
+	findings, courses, input *grid
+}
+
+// NewWorkbook makes a writer of results.xlsx; nothing reaches w before Close.
+func NewWorkbook(w io.Writer, h *Head) *Workbook {
+	return &Workbook{w: w, h: h,
+		findings: newGrid("Findings", findingColumns(h), h.Paper),
+		courses:  newGrid("Courses", courseColumns(h), h.Paper),
+		input:    newGrid("Input", inputColumns, h.Paper)}
+}
+
+// unit is the user's unit of temperature.
+func (h *Head) unit() string {
+	if h.Fahrenheit {
+		return "°F"
+	}
+	return "°C"
+}
+
+// inUnit turns °C into the user's unit.
+func (h *Head) inUnit(c float64) float64 {
+	if h.Fahrenheit {
+		return fahrenheit(c)
+	}
+	return c
+}
+
+// perK is how many of the user's degrees make 1 K.
+func (h *Head) perK() float64 {
+	if h.Fahrenheit {
+		return 1.8
+	}
+	return 1
+}
+
+func overviewColumns(h *Head) []gridColumn {
+	return []gridColumn{{"No. in the plan", 9, 0}, {"Product", 30, 0}, {"Family", 16, 0}, {"Recipe version", 12, 0}, {"Batch", 12, 0},
+		{"Process", 20, 0}, {"Verdict", 14, 0}, {"Deciding limit", 28, 0}, {"Margin (" + h.unit() + " difference)", 14, 4},
+		{"Margin (min)", 12, 4}, {"Cautions", 10, 0}, {"Row of the plan", 18, 0}, {"Why", 80, 0}}
+}
+
+func findingColumns(h *Head) []gridColumn {
+	return []gridColumn{{"Product", 30, 0}, {"Process", 20, 0}, {"Limit", 28, 0}, {"Rule", 14, 0}, {"Level", 12, 0}, {"Group", 16, 0},
+		{"Verdict", 14, 0}, {"Value", 12, 6}, {"Required", 12, 6}, {"Unit", 14, 0}, {"Margin (" + h.unit() + " difference)", 14, 4},
+		{"Margin (min)", 12, 4}, {"Deciding time (min)", 12, 4}, {"Deciding place", 28, 0}, {"Up (mm)", 10, 4}, {"Across (mm)", 10, 4},
+		{"Along (mm)", 10, 4}, {"Clock start (min)", 12, 4}, {"Clock end (min)", 12, 4}, {"Why", 80, 0}, {"Notes", 40, 0},
+		{"Run", 22, 0}, {"Code", 24, 0}, {"Clause", 16, 0}, {"Edition", 14, 0}, {"Issued by", 20, 0}, {"Confirmed by", 18, 0},
+		{"Confirmed on", 14, 0}, {"Status", 12, 0}, {"CCP", 10, 0}, {"Hazard", 20, 0}, {"Cells", 24, 0}}
+}
+
+// courseColumns holds a pair of columns for each named point; each row names its own.
+func courseColumns(h *Head) []gridColumn {
+	u := " (" + h.unit() + ")"
+	cs := []gridColumn{{"Product", 30, 0}, {"Step", 20, 0}, {"Stage", 12, 0}, {"Time (min)", 10, 6}, {"Surroundings" + u, 14, 5},
+		{"Coldest" + u, 12, 5}, {"Hottest" + u, 12, 5}, {"Mean" + u, 12, 5},
+		{"Coldest: up (mm)", 10, 4}, {"Coldest: across (mm)", 10, 4}, {"Coldest: along (mm)", 10, 4},
+		{"Hottest: up (mm)", 10, 4}, {"Hottest: across (mm)", 10, 4}, {"Hottest: along (mm)", 10, 4}}
+	for i := 1; i <= max(h.MostPoints, 1); i++ {
+		cs = append(cs, gridColumn{fmt.Sprintf("Point %d", i), 14, 0}, gridColumn{fmt.Sprintf("Point %d%s", i, u), 12, 5})
+	}
+	return cs
+}
+
+var inputColumns = []gridColumn{{"Product", 30, 0}, {"Cell", 18, 0}, {"Column", 30, 0}, {"Typed", 30, 0}, {"Used", 30, 0}, {"Why", 60, 0}}
+
+// Add writes one product; it may be forgotten afterwards.
+func (b *Workbook) Add(p *Product) error {
+	if p == nil || p.History == nil {
+		return errors.New("results.xlsx: a product without a history")
+	}
+	b.rows = append(b.rows, slimOf(b.h, p, len(b.rows)+1))
+	b.addFindings(p)
+	b.addCourse(p)
+	b.input.room(len(p.Readings))
+	for _, r := range p.Readings {
+		b.input.words(p.Product.Name, r.At.String(), r.Column, r.Typed, r.Used, r.Why)
+	}
+	return errors.Join(b.findings.err, b.courses.err, b.input.err)
+}
+
+func (b *Workbook) addFindings(p *Product) {
+	g := b.findings
+	g.room(len(p.Judgement.Findings) + len(p.Judgement.Groups))
+	for i := range p.Judgement.Findings {
+		b.addFinding(p, &p.Judgement.Findings[i])
+	}
+	for _, gr := range p.Judgement.Groups {
+		why := ""
+		if gr.DecidedBy != "" {
+			why = "decided by " + gr.DecidedBy
+		}
+		g.room(1)
+		g.begin()
+		for _, s := range []string{p.Product.Name, p.Process, gr.Group, join(gr.AnyOf), "group", "", gr.Verdict.String()} {
+			g.text(s)
+		}
+		g.col = 19 // Why
+		g.text(why)
+		g.end()
+	}
+}
+
+// addFinding writes one row; its cells stand in the order of findingColumns.
+func (b *Workbook) addFinding(p *Product, f *rules.Finding) {
+	g, l := b.findings, f.Limit
+	if l == nil {
+		l = &rules.Limit{}
+	}
+	g.room(1)
+	g.begin()
+	for _, s := range []string{p.Product.Name, p.Process, l.Name, ruleName(l), f.Level, l.Group, f.Verdict.String()} {
+		g.text(s)
+	}
+	for _, v := range []*float64{f.Value, f.Required} {
+		switch {
+		case v == nil:
+			g.skip()
+		case f.Unit == "°C":
+			g.number(b.h.inUnit(*v))
+		case f.Unit == "K":
+			g.number(*v * b.h.perK())
+		default:
+			g.number(*v)
+		}
+	}
+	g.text(b.h.unitWord(f.Unit))
+	g.maybe(f.MarginK, b.h.perK())
+	g.maybe(f.MarginS, 1./60)
+	g.maybe(f.AtS, 1./60)
+	g.text(f.PlaceName)
+	if f.Place != nil {
+		b.place(g, *f.Place)
+	} else {
+		g.col += 3
+	}
+	g.maybe(f.ClockStartS, 1./60)
+	g.maybe(f.ClockEndS, 1./60)
+	run := ""
+	if f.LowConductivity {
+		run = "0.9 of the conductivity"
+	}
+	for _, s := range []string{f.Why, strings.Join(f.Notes, "; "), run, l.Code, l.Clause, l.Edition, l.IssuedBy, l.ConfirmedBy,
+		l.ConfirmedOn, l.Status, l.CCP, l.Hazard, strings.Join(cellNames(f.Cells), ", ")} {
+		g.text(s)
+	}
+	g.end()
+}
+
+// unitWord is the unit of a finding as its numbers are shown.
+func (h *Head) unitWord(unit string) string {
+	switch unit {
+	case "°C":
+		return h.unit()
+	case "K":
+		return h.unit() + " difference"
+	}
+	return unit
+}
+
+func (b *Workbook) place(g *grid, p model.Place) {
+	g.number(p.UpM * 1000)
+	g.number(p.AcrossM * 1000)
+	g.number(p.AlongM * 1000)
+}
+
+// addCourse writes a row for each sample.
+func (b *Workbook) addCourse(p *Product) {
+	g, s, w := b.courses, &p.Samples, p.History
+	temperature := func(v []float64, i int) {
+		if i < len(v) {
+			g.number(b.h.inUnit(v[i]))
+		} else {
+			g.skip()
+		}
+	}
+	place := func(v []model.Place, i int) {
+		if i < len(v) {
+			b.place(g, v[i])
+		} else {
+			g.col += 3
+		}
+	}
+	g.room(len(s.TimesS))
+	k := 0
+	for i, t := range s.TimesS {
+		for k < len(w.Spans)-1 && t > w.Spans[k].EndS { // at the instant of a change: the step before it
+			k++
+		}
+		step, stage := stepWords(w.Spans, k)
+		g.room(1)
+		g.begin()
+		g.text(p.Product.Name)
+		g.text(step)
+		g.text(stage)
+		g.number(t / 60)
+		if w.MediumC != nil {
+			g.number(b.h.inUnit(w.MediumC(t)))
+		} else {
+			g.skip()
+		}
+		temperature(s.Coldest, i)
+		temperature(s.Hottest, i)
+		temperature(s.Mean, i)
+		place(s.ColdestAt, i)
+		place(s.HottestAt, i)
+		for n, pt := range w.Points {
+			g.text(pt.Name)
+			if n < len(s.Points) {
+				temperature(s.Points[n], i)
+			} else {
+				g.skip()
+			}
+		}
+		g.end()
+	}
+}
+
+// stepWords names a step and its stage.
+func stepWords(spans []model.Span, k int) (step, stage string) {
+	if k >= len(spans) || spans[k].Step == nil {
+		return "", ""
+	}
+	st := spans[k].Step
+	if st.Stage != nil {
+		stage = st.Stage.Name
+	}
+	return st.Name, stage
+}
+
+// overview makes the first sheet: the products, the worst first; below them the problems and what the run was.
+func (b *Workbook) overview() *grid {
+	g := newGrid("Overview", overviewColumns(b.h), b.h.Paper)
+	rows := listed(b.h.NotCalculated, b.rows)
+	g.room(len(rows))
+	for i := range rows {
+		r := &rows[i]
+		g.begin()
+		if r.calculated {
+			g.number(float64(r.order))
+		} else {
+			g.skip()
+		}
+		for _, s := range []string{r.Product, r.family, r.recipe, r.batch, r.Process, r.word(), r.Deciding} {
+			g.text(s)
+		}
+		g.maybe(r.MarginK, b.h.perK())
+		g.maybe(r.MarginS, 1./60)
+		if r.calculated {
+			g.number(float64(r.cautions))
+		} else {
+			g.skip()
+		}
+		g.text(r.at.String())
+		g.text(r.Why)
+		g.end()
+	}
+	last := g.row
+	b.about(g)
+	g.finish(g.table(last))
+	return g
+}
+
+// about writes what the run was, below the overview.
+func (b *Workbook) about(g *grid) {
+	h := b.h
+	g.words("")
+	for _, r := range [][2]string{{"Plan", h.Plan}, {"SHA-256 of the plan", h.SHA256}, {"Program", "slowpoint " + h.Version}, {"Date", isoDate(h)}} {
+		g.words("", r[0], r[1])
+	}
+	for _, it := range h.Items {
+		g.words("", it.Item, it.Value, "", "", "", "", "", "", "", "", it.At.String())
+	}
+	g.words("")
+	for _, s := range CautionText() {
+		g.words("", s)
+	}
+	if len(h.Problems) > 0 {
+		g.words("")
+		g.words("", "Problems in the plan")
+		for _, e := range h.Problems {
+			g.words("", e.Level.String(), e.Typed, "", "", "", "", "", "", "", "", e.At.String(), strings.TrimSuffix(e.Msg+" – "+e.Hint, " – "))
+		}
+	}
+	if bad := wrongAnswers(h.Known); bad > 0 {
+		g.words("", fmt.Sprintf("%d of %d known-answer cases came out wrong on this machine: do not use these results", bad, len(h.Known)))
+	}
+}
+
+// wrongAnswers counts the known-answer cases that this machine did not solve.
+func wrongAnswers(ks []KnownAnswer) int {
+	n := 0
+	for _, k := range ks {
+		if !k.OK {
+			n++
+		}
+	}
+	return n
+}
+
+// isoDate is the day of the run; "" if it was not given.
+func isoDate(h *Head) string {
+	if h.Date.IsZero() {
+		return ""
+	}
+	return h.Date.Format("2006-01-02")
+}
+
+// Close writes the workbook and lets go of what was spooled. Call it once, after the last product, also after an error.
+func (b *Workbook) Close() (err error) {
+	grids := []*grid{b.overview(), b.findings, b.courses, b.input}
+	defer func() {
+		for _, g := range grids {
+			for _, p := range g.pages {
+				p.packed.Close()
+			}
+		}
+	}()
+	f := excelize.NewFile()
+	defer func() { err = errors.Join(err, f.Close()) }()
+	if err := makeStyles(f); err != nil {
+		return err
+	}
+	pages := map[string]*part{}
+	for i, g := range grids {
+		if len(g.pages) == 0 {
+			g.turn()
+		}
+		if i > 0 { // the overview is finished
+			g.finish("")
+		}
+		if g.err != nil {
+			return g.err
+		}
+		if err := g.bind(f, pages); err != nil {
+			return err
+		}
+	}
+	if err := b.properties(f); err != nil {
+		return err
+	}
+	return writeParts(f, b.w, pages)
+}
+
+// bind makes the sheets in the file that the pages stand for.
+func (g *grid) bind(f *excelize.File, pages map[string]*part) error {
+	for i, p := range g.pages {
+		name := g.name
+		if i > 0 {
+			name = fmt.Sprintf("%s %d", g.name, i+1)
+		}
+		n := len(pages) + 1
+		if n == 1 {
+			if err := f.SetSheetName("Sheet1", name); err != nil {
+				return err
+			}
+		} else if _, err := f.NewSheet(name); err != nil {
+			return err
+		}
+		pages[fmt.Sprintf("xl/worksheets/sheet%d.xml", n)] = p
+		title := excelize.DefinedName{Name: "_xlnm.Print_Titles", RefersTo: "'" + name + "'!$1:$1", Scope: name}
+		if err := f.SetDefinedName(&title); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+func (b *Workbook) properties(f *excelize.File) error {
+	p := &excelize.DocProperties{Title: "Results of " + string(xmlSafe(b.h.Plan)), Creator: "slowpoint " + b.h.Version,
+		Description: strings.Join(CautionText(), " ")}
+	if !b.h.Date.IsZero() {
+		p.Created = b.h.Date.UTC().Format("2006-01-02T15:04:05Z")
+		p.Modified = p.Created
+	}
+	return f.SetDocProps(p)
+}
+
+// xmlSafe drops what XML cannot hold; the writer of the properties escapes the rest itself.
+func xmlSafe(s string) []byte {
+	return bytes.Map(func(r rune) rune {
+		if r < ' ' || r == 0xFFFE || r == 0xFFFF {
+			return -1
+		}
+		return r
+	}, []byte(s))
+}
