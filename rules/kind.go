@@ -47,6 +47,10 @@ type Fault struct{ Column, Msg, Hint string }
 func (l *Limit) Faults() []Fault {
 	var fs []Fault
 	add := func(column, msg, hint string) { fs = append(fs, Fault{column, msg, hint}) }
+	if l.Unreadable != "" {
+		add("", "its row has errors: "+l.Unreadable, "mend the row")
+		return fs
+	}
 	k := l.Kind
 	one := k == Hold || k == StayAbove || k == StayBelow || k == ByTheEnd
 	between := k == Band || k == Outside

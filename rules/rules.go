@@ -110,6 +110,7 @@ type Limit struct {
 	CCP, Hazard, Status             string
 	Code, Clause, Edition, IssuedBy string
 	ConfirmedBy, ConfirmedOn, Note  string
+	Unreadable                      string            // what in its row could not be used, in words; such a limit cannot be told. "" for a sound row
 	Typed                           map[string]string // column heading without unit -> value with its unit as typed ("130 °F")
 }
 
