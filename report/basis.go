@@ -1,0 +1,313 @@
+package report
+
+import (
+	"math"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/rules"
+)
+
+// basis is what the numbers rest on: critical factors, method, known answers.
+func (x *sheet) basis() {
+	d, h, p := x.doc, x.head, x.p
+	d.page()
+	d.heading(say("basis title"), 0, 30)
+	d.heading(say("factors title"), 1, 25)
+	d.text(say("factors note"))
+	d.table([]col{{title: say("col factor"), wide: 38, bold: true}, {title: say("col used"), wide: 62}, {title: say("col from"), wide: 80}}, x.factors(), small)
+	d.heading(say("method title"), 1, 20)
+	if p.History != nil {
+		d.text(say("method", p.History.Method))
+		d.text(say("resolution", duration(h.EveryS, nearest), h.errorWords(p.History.ErrorK)))
+		if p.History.Bound != "" {
+			d.text(say("bound", duration(p.History.BoundFromS, nearest), p.History.Bound))
+		}
+	}
+	if p.Low != nil {
+		d.text(x.lowSentence())
+	}
+	d.text(say("rounding"))
+	d.heading(say("known title"), 1, 25)
+	if len(h.Known) == 0 {
+		d.text(say("known none"))
+		return
+	}
+	d.text(say("known note"))
+	var rows [][]string
+	for _, k := range h.Known {
+		ok := say("known bad")
+		if k.OK {
+			ok = say("known good")
+		}
+		rows = append(rows, []string{k.Name, k.Source, significant(k.Expected) + " " + k.Unit, significant(k.Got) + " " + k.Unit, "± " + significant(k.Allowance) + " " + k.Unit, ok})
+	}
+	d.table([]col{{title: say("col case"), wide: 44, bold: true}, {title: say("col source"), wide: 48}, {title: say("col expected"), wide: 24}, {title: say("col got"), wide: 24},
+		{title: say("col allowance"), wide: 22}, {title: say("col within"), wide: 18}}, rows, small)
+}
+
+// significant writes a number with about six digits.
+func significant(v float64) string {
+	if v == 0 || math.IsNaN(v) || math.IsInf(v, 0) {
+		return plain(v, 0, nearest)
+	}
+	return plain(v, max(0, min(9, 5-int(math.Floor(math.Log10(math.Abs(v)))))), nearest)
+}
+
+// lowSentence sets the two runs side by side at the deciding limit.
+func (x *sheet) lowSentence() string {
+	low, usual := 0, 0
+	for i := range x.p.Judgement.Findings {
+		if f := &x.p.Judgement.Findings[i]; f.Verdict != rules.NotApplicable && f.LowConductivity {
+			low++
+		} else if f.Verdict != rules.NotApplicable {
+			usual++
+		}
+	}
+	end := x.p.History.EndS()
+	return say("low", low, usual, x.decides.placeName, x.head.temperature(x.p.History.At(x.decides.place, end), nearest),
+		x.head.temperature(x.p.Low.At(x.decides.place, end), nearest))
+}
+
+// factors are the critical factors with the values used and where they come from.
+func (x *sheet) factors() [][]string {
+	h, p := x.head, x.p
+	m := p.Product.Food
+	var rows [][]string
+	add := func(a, b, c string) { rows = append(rows, []string{a, b, c}) }
+	shape := ""
+	if p.Product.Shape != nil {
+		shape = p.Product.Shape.Name
+	}
+	add(say("factor shape"), joined(shape, x.sizes()), x.from("Shape", "Thickness", "Width", "Length", "Diameter", "Volume", "Surface area"))
+	add(say("factor start"), h.stated(p.Product.StartC), x.from("Start temperature"))
+	if m != nil {
+		add(say("factor food"), joined(m.Name, m.Composition), m.Source)
+		if m.FreezingC != nil {
+			add(say("factor freezing"), h.stated(*m.FreezingC), m.Source)
+		}
+	}
+	if p.History == nil {
+		return rows
+	}
+	for i := range p.History.Spans {
+		x.spanFactors(&p.History.Spans[i], add)
+	}
+	return rows
+}
+
+// from names the cells in which some columns were typed.
+func (x *sheet) from(columns ...string) string {
+	var s []string
+	for _, r := range x.p.Readings {
+		for _, c := range columns {
+			if r.Column == c && (r.At.Sheet == x.p.Product.At.Sheet || x.p.Product.At.IsZero()) && r.Typed != "" {
+				s = append(s, say("factor typed", r.Typed, r.At.String()))
+			}
+		}
+	}
+	return strings.Join(s, "; ")
+}
+
+// spanFactors are the critical factors of one step.
+func (x *sheet) spanFactors(sp *model.Span, add func(a, b, c string)) {
+	h, s := x.head, sp.Step
+	what := s.Name
+	end := duration(sp.EndS-sp.StartS, nearest)
+	switch {
+	case sp.Reached != nil && *sp.Reached && s.UntilC != nil:
+		end = say("factor until", end, h.stated(*s.UntilC))
+	case sp.Reached != nil && s.UntilC != nil:
+		end = say("factor until not", end, h.stated(*s.UntilC))
+	}
+	add(what, say("factor lasts", end), s.At.String())
+	x.exposure(what, &s.Exposure, "", add)
+	for i := range s.Faces {
+		x.exposure(what, &s.Faces[i].Exposure, s.Faces[i].Face.Name, add)
+	}
+	for _, f := range sp.Films {
+		face := ""
+		if f.Face != nil {
+			face = ", " + f.Face.Name
+		}
+		used := say("film", plain(f.FilmW, 2, nearest))
+		if math.IsInf(f.FilmW, 1) {
+			used = say("film held")
+		} else if f.TotalW != f.FilmW && f.TotalW > 0 {
+			used += say("film total", plain(f.TotalW, 2, nearest))
+		}
+		source := f.Source
+		if f.Typed {
+			source = joined(say("film typed"), source)
+		}
+		add(what+face, used, source)
+	}
+	if pr := sp.Props; pr.KWmK > 0 && x.p.Product.Food != nil {
+		add(what, say("props", plain(pr.KWmK, 4, nearest), plain(pr.RhoKgM3, 1, nearest), plain(pr.CJkgK, 0, nearest), x.propsAt(sp)), x.p.Product.Food.Source)
+	}
+	if sp.MediumFromC != nil && sp.MediumToC != nil {
+		add(what, say("medium raised", h.stated(*sp.MediumFromC), h.stated(*sp.MediumToC)), say("medium raised why"))
+	}
+}
+
+func (x *sheet) propsAt(sp *model.Span) string {
+	if sp.PropsAtC == 0 {
+		return ""
+	}
+	return say("props at", x.head.temperature(sp.PropsAtC, nearest))
+}
+
+// exposure is a row about the surroundings of a step or face.
+func (x *sheet) exposure(what string, e *model.Exposure, face string, add func(a, b, c string)) {
+	h := x.head
+	if e.Surface == nil {
+		return
+	}
+	s := []string{e.Surface.Name}
+	if face != "" {
+		s[0] = face + ": " + s[0]
+	}
+	if n := len(e.Medium.C); n > 0 {
+		kind := say("set-point")
+		if e.Measured {
+			kind = say("measured")
+		}
+		if n == 1 {
+			s = append(s, say("medium one", h.stated(e.Medium.C[0]), kind))
+		} else {
+			lo, hi := e.Medium.C[0], e.Medium.C[0]
+			for _, c := range e.Medium.C {
+				lo, hi = min(lo, c), max(hi, c)
+			}
+			s = append(s, say("medium course", e.Medium.Name, h.stated(lo), h.stated(hi), kind))
+		}
+	}
+	if e.AirMS != nil {
+		s = append(s, say("air speed", plain(*e.AirMS, 2, nearest)))
+	}
+	if e.RH != nil {
+		s = append(s, say("humidity", plain(*e.RH, 1, nearest)))
+	}
+	if e.RadiatingC != nil {
+		s = append(s, say("radiating", h.stated(*e.RadiatingC)))
+	}
+	if e.Emissivity != nil {
+		s = append(s, say("emissivity", plain(*e.Emissivity, 2, nearest)))
+	}
+	if e.Wet != nil {
+		s = append(s, map[bool]string{true: say("wet"), false: say("dry")}[*e.Wet])
+	}
+	if e.Cover != nil {
+		s = append(s, say("cover", e.Cover.Name))
+	}
+	if e.WrapM2KW != nil {
+		s = append(s, say("wrap", plain(*e.WrapM2KW, 5, nearest)))
+	}
+	add(what, strings.Join(s, ", "), e.At.String())
+}
+
+// warnings are the cautions of this run.
+func (x *sheet) warnings() {
+	d := x.doc
+	d.heading(say("cautions title"), 0, 30)
+	d.text(say("cautions note"))
+	for _, c := range x.cautions {
+		d.item("•", c.Text, body)
+	}
+	if len(x.cautions) == 0 {
+		d.text(say("cautions none"))
+	}
+	d.heading(say("standing title"), 1, 20)
+	for _, s := range CautionText() {
+		d.item("•", s, body)
+	}
+}
+
+// readings is the input echo.
+func (x *sheet) readings() {
+	d := x.doc
+	d.heading(say("input title"), 0, 30)
+	if len(x.p.Readings) == 0 {
+		d.text(say("input none"))
+		return
+	}
+	d.text(say("input note"))
+	var rows [][]string
+	for _, r := range x.p.Readings {
+		typed := r.Typed
+		if typed == "" {
+			typed = say("input default")
+		}
+		rows = append(rows, []string{r.At.String(), r.Column, typed, r.Used, r.Why})
+	}
+	d.table([]col{{title: say("col cell"), wide: 30}, {title: say("col column"), wide: 42}, {title: say("col typed"), wide: 40}, {title: say("col used"), wide: 34},
+		{title: say("col why"), wide: frameWide - 146}}, rows, small)
+}
+
+// changes are the reasons to look at the process again, with boxes to tick.
+func (x *sheet) changes() {
+	d := x.doc
+	d.heading(say("changes title"), 0, 60)
+	d.text(say("changes note"))
+	for _, k := range []string{"recipe", "size", "supplier", "equipment", "load", "setting", "limit", "measured", "deviation", "organism", "year"} {
+		d.item("☐", say("change "+k), body)
+	}
+}
+
+// deviation is a page of blanks: the decision is not the program's.
+func (x *sheet) deviation() {
+	d := x.doc
+	d.page()
+	d.heading(say("deviation title"), 0, 60)
+	d.text(say("deviation note"))
+	for _, k := range []string{"what", "cause", "held", "disposition", "prevention", "records"} {
+		d.y += 2
+		d.para(say("deviation "+k), style{size: body, bold: true, after: 0})
+		for range [...]int{0, 1, 2} {
+			d.y += 7.5
+			d.rule(d.left, d.left+frameWide, d.y, 0.7)
+		}
+	}
+	d.y += 3
+	x.signatures("sign decided", "sign checked")
+}
+
+// glossary explains the words of theory in half a page.
+func (x *sheet) glossary() {
+	d := x.doc
+	const rows = 14
+	d.heading(say("glossary title"), 0, 100)
+	var p [][2]string
+	for _, k := range []string{"slowest", "met", "cannot tell", "margin", "clock", "place", "film", "set-point", "carry-over", "equivalent", "z", "conductivity", "record", "digest"} {
+		p = append(p, [2]string{say("word " + k), say("means " + k)})
+	}
+	d.pairs(p[:rows], 40)
+}
+
+// ProblemsOf gives the problems that touch a product: its rows, its limits', and those of the whole plan. Faults are not among them.
+func (h *Head) ProblemsOf(p *Product) cell.Errors {
+	type row struct {
+		sheet string
+		row   int
+	}
+	mine := map[row]bool{{p.Product.At.Sheet, p.Product.At.Row}: true, {"Plan", 0}: true, {"", 0}: true}
+	for _, r := range p.Readings {
+		mine[row{r.At.Sheet, r.At.Row}] = true
+	}
+	for _, s := range p.Steps {
+		mine[row{s.At.Sheet, s.At.Row}] = true
+	}
+	for _, f := range p.Judgement.Findings {
+		if f.Limit != nil {
+			mine[row{f.Limit.At.Sheet, f.Limit.At.Row}] = true
+		}
+	}
+	var out cell.Errors
+	for _, e := range h.Problems {
+		if e.Level != cell.Fault && (e.At.Row == 0 || e.At.Sheet == "Plan" || mine[row{e.At.Sheet, e.At.Row}]) {
+			out = append(out, e)
+		}
+	}
+	return out
+}

@@ -1,0 +1,248 @@
+package report
+
+import (
+	"math"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/rules"
+)
+
+// Caution is a reservation that applies to a run.
+type Caution struct{ Key, Text string }
+
+// trigger tells whether a caution applies, and fills the blanks of its text.
+type trigger struct {
+	key string
+	due func(h *Head, p *Product) (args []any, yes bool)
+}
+
+// triggers are the cautions in the order in which they are printed. The texts are in words, under "caution " and the key.
+var triggers = []trigger{
+	{"thin margin", thinMargin},
+	{"resolution coarser than margin", coarse},
+	{"limit without citation", uncited},
+	{"step did not reach its temperature", stepsWhere(func(sp *model.Span) bool { return sp.Reached != nil && !*sp.Reached })},
+	{"step ended by the model", stepsWhere(func(sp *model.Span) bool { return sp.Reached != nil && *sp.Reached })},
+	{"medium is a set-point", stepsWhere(func(sp *model.Span) bool {
+		return anyExposure(sp.Step, func(e *model.Exposure) bool { return len(e.Medium.C) > 0 && !e.Measured })
+	})},
+	{"film coefficient assumed", stepsWhere(func(sp *model.Span) bool { return anyFilm(sp, func(f *model.FilmUsed) bool { return !f.Typed }) })},
+	{"water film assumed high", stepsWhere(func(sp *model.Span) bool {
+		return anyExposure(sp.Step, func(e *model.Exposure) bool {
+			return (e.Surface == model.WaterBath || e.Surface == model.StirredWater) && e.FilmW == nil
+		})
+	})},
+	{"evaporation left out", stepsWhere(func(sp *model.Span) bool {
+		return anyExposure(sp.Step, func(e *model.Exposure) bool { return inAir(e) && uncovered(e) && !wet(e) })
+	})},
+	{"carry-over without evaporation", carryOver},
+	{"moist surface above boiling", boiling},
+	{"chill medium raised to the freezing point", stepsWhere(func(sp *model.Span) bool { return sp.MediumFromC != nil })},
+	{"crossing freezing", freezing},
+	{"properties from composition", func(h *Head, p *Product) ([]any, bool) { return nil, p.Product.Food != nil && p.Product.Food.Composed }},
+	{"conductivity scatter", func(h *Head, p *Product) ([]any, bool) { return nil, p.Low != nil }},
+	{"thick food may flow", func(h *Head, p *Product) ([]any, bool) {
+		return nil, p.Product.Food != nil && p.Product.Food.Flow == model.FlowsThick
+	}},
+	{"idealised shape", func(h *Head, p *Product) ([]any, bool) {
+		if p.Product.Shape == nil || p.History == nil || p.History.Recorded || p.Product.Shape == model.Stirred {
+			return nil, false
+		}
+		return []any{p.Product.Shape.Name}, true
+	}},
+	{"start assumed uniform", func(h *Head, p *Product) ([]any, bool) {
+		return []any{h.stated(p.Product.StartC)}, p.History != nil && !p.History.Recorded && p.Product.Shape != model.Stirred
+	}},
+	{"probe place unknown", func(h *Head, p *Product) ([]any, bool) {
+		return nil, p.History != nil && len(p.History.Points) <= 1 && p.Product.Shape != model.Stirred
+	}},
+	{"record sparse or with gaps", sparse},
+	{"dates set by hand", func(h *Head, p *Product) ([]any, bool) {
+		v := strings.TrimSpace(h.item("Date order"))
+		return []any{v}, v != ""
+	}},
+}
+
+// Cautions lists what applies to a product: first the reservations of this table, then those that its findings carry.
+func Cautions(h *Head, p *Product) []Caution {
+	var out []Caution
+	seen := map[string]bool{}
+	for _, t := range triggers {
+		if args, yes := t.due(h, p); yes {
+			out = append(out, Caution{t.key, say("caution "+t.key, args...)})
+			seen[t.key] = true
+		}
+	}
+	add := func(key string) {
+		if key == "" || seen[key] {
+			return
+		}
+		seen[key] = true
+		text := key
+		if _, known := words["caution "+key]; known {
+			text = say("caution " + key)
+		}
+		out = append(out, Caution{key, text})
+	}
+	for i := range p.Judgement.Findings {
+		for _, key := range p.Judgement.Findings[i].Cautions {
+			add(key)
+		}
+	}
+	if p.History != nil {
+		for _, sp := range p.History.Spans {
+			for _, f := range sp.Films {
+				add(f.Caution)
+			}
+		}
+		add(p.History.Bound)
+	}
+	return out
+}
+
+// stepsWhere is a trigger that names the steps for which something holds.
+func stepsWhere(holds func(*model.Span) bool) func(*Head, *Product) ([]any, bool) {
+	return func(h *Head, p *Product) ([]any, bool) {
+		if p.History == nil {
+			return nil, false
+		}
+		var names []string
+		for i := range p.History.Spans {
+			if sp := &p.History.Spans[i]; sp.Step != nil && holds(sp) {
+				names = append(names, sp.Step.Name)
+			}
+		}
+		return []any{strings.Join(names, ", ")}, len(names) > 0
+	}
+}
+
+// anyExposure tells whether something holds for the surroundings of a step or of one of its faces.
+func anyExposure(s *model.Step, holds func(*model.Exposure) bool) bool {
+	if s.Surface != nil && holds(&s.Exposure) {
+		return true
+	}
+	for i := range s.Faces {
+		if s.Faces[i].Surface != nil && holds(&s.Faces[i].Exposure) {
+			return true
+		}
+	}
+	return false
+}
+
+func anyFilm(sp *model.Span, holds func(*model.FilmUsed) bool) bool {
+	for i := range sp.Films {
+		if f := &sp.Films[i]; !math.IsInf(f.FilmW, 1) && f.FilmW > 0 && holds(f) {
+			return true
+		}
+	}
+	return false
+}
+
+func inAir(e *model.Exposure) bool {
+	return e.Surface == model.StillAir || e.Surface == model.MovingAir || e.Surface == model.Film
+}
+func uncovered(e *model.Exposure) bool { return e.Cover == nil || e.Cover == model.Open }
+func wet(e *model.Exposure) bool       { return e.Wet != nil && *e.Wet }
+
+// thinMargin: the deciding room is less than 2 K or a tenth of the time.
+func thinMargin(h *Head, p *Product) ([]any, bool) {
+	var names []string
+	for i := range p.Judgement.Findings {
+		f := &p.Judgement.Findings[i]
+		if f.Verdict == rules.Met && f.Level == "must" && tightness(f) < 1 && f.Limit != nil {
+			names = append(names, f.Limit.Name)
+		}
+	}
+	return []any{strings.Join(names, ", "), h.difference(2, nearest)}, len(names) > 0
+}
+
+// coarse: the error estimate is as large as a margin.
+func coarse(h *Head, p *Product) ([]any, bool) {
+	if p.History == nil {
+		return nil, false
+	}
+	var names []string
+	for i := range p.Judgement.Findings {
+		f := &p.Judgement.Findings[i]
+		if finite(f.MarginK) && math.Abs(*f.MarginK) <= p.History.ErrorK && f.Verdict != rules.NotApplicable && f.Limit != nil {
+			names = append(names, f.Limit.Name)
+		}
+	}
+	return []any{h.errorWords(p.History.ErrorK), strings.Join(names, ", ")}, len(names) > 0
+}
+
+// uncited: a limit lacks its code, clause or edition.
+func uncited(h *Head, p *Product) ([]any, bool) {
+	var names []string
+	for _, f := range p.Judgement.Findings {
+		if f.Limit != nil && bare(f.Limit) && f.Verdict != rules.NotApplicable && !f.LowConductivity {
+			names = append(names, f.Limit.Name)
+		}
+	}
+	return []any{strings.Join(names, ", ")}, len(names) > 0
+}
+
+// carryOver: standing after a cook in air, without a wet surface, is credited with the temperature still rising inside.
+func carryOver(h *Head, p *Product) ([]any, bool) {
+	if p.History == nil {
+		return nil, false
+	}
+	for i := 1; i < len(p.History.Spans); i++ {
+		before, sp := p.History.Spans[i-1].Step, p.History.Spans[i].Step
+		if before == nil || sp == nil || sp.Stage != model.Rest || before.Stage != model.Cook && before.Stage != model.Reheat {
+			continue
+		}
+		if anyExposure(sp, func(e *model.Exposure) bool { return inAir(e) && !wet(e) }) {
+			return []any{sp.Name}, true
+		}
+	}
+	return nil, false
+}
+
+// boiling: a surface that may be moist is predicted above 100 °C.
+func boiling(h *Head, p *Product) ([]any, bool) {
+	hot := math.Inf(-1)
+	for _, c := range p.Samples.Hottest {
+		hot = max(hot, c)
+	}
+	return []any{h.temperature(hot, up), h.stated(100)}, hot > 100
+}
+
+// freezing: somewhere the food is at or below its freezing point, or below 0 °C where none is known.
+func freezing(h *Head, p *Product) ([]any, bool) {
+	if p.Product.Food == nil || p.History == nil || p.History.Recorded {
+		return nil, false
+	}
+	at := 0.0
+	if p.Product.Food.FreezingC != nil {
+		at = *p.Product.Food.FreezingC
+	}
+	cold := math.Inf(1)
+	for _, c := range p.Samples.Coldest {
+		cold = min(cold, c)
+	}
+	return []any{h.temperature(cold, down), h.stated(at)}, cold <= at
+}
+
+// sparse: a record whose readings are more than five minutes apart somewhere.
+func sparse(h *Head, p *Product) ([]any, bool) {
+	if p.History == nil || !p.History.Recorded || p.History.Scan() == nil {
+		return nil, false
+	}
+	t := p.History.Scan().TimesS
+	gap := 0.0
+	for i := 1; i < len(t); i++ {
+		gap = max(gap, t[i]-t[i-1])
+	}
+	return []any{duration(gap, up)}, gap > 300
+}
+
+// errorWords writes an error estimate, rounded up.
+func (h *Head) errorWords(k float64) string {
+	decimals := 1
+	if k < 0.1 {
+		decimals = 3
+	}
+	return h.first(plain(k, decimals, up)+" °C", plain(k*1.8, decimals, up)+" °F")
+}

@@ -1,0 +1,609 @@
+package report
+
+import (
+	"image/color"
+	"math"
+	"sort"
+
+	"gonum.org/v1/plot"
+	"gonum.org/v1/plot/text"
+	"gonum.org/v1/plot/vg"
+	"gonum.org/v1/plot/vg/draw"
+
+	"slowpoint/model"
+	"slowpoint/rules"
+)
+
+// The colours of lines; they are told apart by dash, mark and label as well.
+var (
+	black      = color.NRGBA{A: 255}
+	blue       = color.NRGBA{0, 114, 178, 255}
+	vermillion = color.NRGBA{213, 94, 0, 255}
+	green      = color.NRGBA{0, 158, 115, 255}
+	grey       = color.NRGBA{110, 110, 110, 255}
+	pale       = color.NRGBA{205, 205, 205, 255}
+)
+
+// looks are what tells lines apart in grey.
+var looks = []struct {
+	color color.NRGBA
+	dash  []vg.Length
+	mark  draw.GlyphDrawer
+}{
+	{black, nil, draw.CircleGlyph{}},
+	{blue, []vg.Length{6, 2}, draw.BoxGlyph{}},
+	{vermillion, []vg.Length{2, 2}, draw.TriangleGlyph{}},
+	{green, []vg.Length{8, 2, 2, 2}, draw.RingGlyph{}},
+	{blue, nil, draw.SquareGlyph{}},
+	{vermillion, []vg.Length{10, 3}, draw.PyramidGlyph{}},
+}
+
+// line is one curve of a chart.
+type line struct {
+	name string
+	x, y []float64 // as long as each other, in the units of the axes; NaN breaks the line
+}
+
+// level is a limit's temperature: a line from one time to another with its words at the line.
+type level struct {
+	words    string
+	y        float64
+	from, to float64
+}
+
+// band is a step: its bounds and its name.
+type band struct {
+	name     string
+	from, to float64
+}
+
+// spot marks an instant on a curve.
+type spot struct {
+	words string
+	x, y  float64
+}
+
+// chart has curves with labels at their ends, limits with labels at the line, steps named in words.
+type chart struct {
+	xName, yName   string
+	x0, x1, y0, y1 float64
+	xTicks, yTicks []float64
+	lines          []line
+	levels         []level
+	bands          []band
+	spots          []spot
+	size           float64 // of the type, pt
+	ends           float64 // room for the labels at the right, pt
+}
+
+func (f *chart) style(bold bool) text.Style {
+	return text.Style{Color: black, Font: chartFont(vg.Length(f.size), bold), Handler: faces().measure}
+}
+
+// draw puts the chart on a canvas.
+func (f *chart) draw(c *canvas) {
+	p := plot.New()
+	p.BackgroundColor = nil
+	p.X.Min, p.X.Max, p.Y.Min, p.Y.Max = f.x0, f.x1, f.y0, f.y1
+	for _, a := range []*plot.Axis{&p.X, &p.Y} {
+		a.Label.TextStyle.Font, a.Label.TextStyle.Handler = chartFont(vg.Length(f.size), false), faces().measure
+		a.Tick.Label.Font, a.Tick.Label.Handler = chartFont(vg.Length(f.size), false), faces().measure
+		a.LineStyle.Width, a.Tick.LineStyle.Width = 0.7, 0.7
+	}
+	p.Title.TextStyle.Font, p.Title.TextStyle.Handler = p.X.Label.TextStyle.Font, faces().measure
+	p.Legend.TextStyle.Font, p.Legend.TextStyle.Handler = p.X.Label.TextStyle.Font, faces().measure
+	p.X.Label.Text, p.Y.Label.Text = f.xName, f.yName
+	p.X.Tick.Marker, p.Y.Tick.Marker = marks(f.xTicks), marks(f.yTicks)
+	p.Add(f)
+	p.Draw(draw.Crop(draw.New(c), 0, -vg.Length(f.ends), 0, 0))
+}
+
+func marks(at []float64) plot.ConstantTicks {
+	var t plot.ConstantTicks
+	for _, v := range at {
+		t = append(t, plot.Tick{Value: v, Label: plain(v, 2, nearest)})
+	}
+	return t
+}
+
+// Plot draws everything inside the axes, and the labels beside them.
+func (f *chart) Plot(c draw.Canvas, p *plot.Plot) {
+	x, y := p.Transforms(&c)
+	taken := &labels{}
+	f.plotBands(c, x, taken)
+	for _, v := range f.yTicks {
+		if v > f.y0 && v < f.y1 {
+			c.StrokeLine2(draw.LineStyle{Color: pale, Width: 0.7}, x(f.x0), y(v), x(f.x1), y(v))
+		}
+	}
+	for i := range f.lines {
+		f.plotLine(c, x, y, i, taken)
+	}
+	for i := range f.spots {
+		s := &f.spots[i]
+		c.DrawGlyph(draw.GlyphStyle{Color: black, Radius: 4, Shape: draw.RingGlyph{}}, vg.Point{X: x(s.x), Y: y(s.y)})
+		taken.add(vg.Rectangle{Min: vg.Point{X: x(s.x) - 4, Y: y(s.y) - 4}, Max: vg.Point{X: x(s.x) + 4, Y: y(s.y) + 4}})
+	}
+	for i := range f.levels {
+		f.plotLevel(c, x, y, &f.levels[i], taken)
+	}
+	for i := range f.spots {
+		s := &f.spots[i]
+		f.words(c, s.words, vg.Point{X: x(s.x), Y: y(s.y)}, 6, taken, false)
+	}
+	f.plotEnds(c, y)
+}
+
+// plotBands draws the bounds of the steps and their names in the strip at the top.
+func (f *chart) plotBands(c draw.Canvas, x func(float64) vg.Length, taken *labels) {
+	st := f.style(true)
+	st.YAlign = text.YTop
+	h := vg.Length(f.size * 1.5)
+	for i, b := range f.bands {
+		if i > 0 {
+			c.StrokeLine2(draw.LineStyle{Color: grey, Width: 0.7, Dashes: []vg.Length{1, 2}}, x(b.from), c.Min.Y, x(b.from), c.Max.Y)
+		}
+		room := float64(x(b.to)-x(b.from)) * mmPerPt
+		s := f.fit(b.name, i, room-1)
+		c.FillText(st, vg.Point{X: x(b.from) + 2.5, Y: c.Max.Y - 2}, s)
+	}
+	if len(f.bands) > 0 {
+		c.StrokeLine2(draw.LineStyle{Color: grey, Width: 0.7}, c.Min.X, c.Max.Y-h, c.Max.X, c.Max.Y-h)
+		taken.add(vg.Rectangle{Min: vg.Point{X: c.Min.X, Y: c.Max.Y - h}, Max: c.Max})
+	}
+}
+
+// fit gives the name of a step as far as it fits: with its number, cut, the number alone, or nothing.
+func (f *chart) fit(name string, i int, room float64) string {
+	clean := unseen{}.clean(name)
+	number := plain(float64(i+1), 0, nearest)
+	if s := number + " " + clean; widthMM(s, f.size, true) <= room {
+		return s
+	}
+	if s := shorten(number+" "+clean, room, f.size, true); len([]rune(s)) > 6 {
+		return s
+	}
+	if widthMM(number, f.size, true) <= room {
+		return number
+	}
+	return ""
+}
+
+// plotLine draws a curve with marks along it.
+func (f *chart) plotLine(c draw.Canvas, x, y func(float64) vg.Length, i int, taken *labels) {
+	l, look := &f.lines[i], looks[i%len(looks)]
+	ls := draw.LineStyle{Color: look.color, Width: 1.2, Dashes: look.dash}
+	if i == 0 {
+		ls.Width = 1.8
+	}
+	var run []vg.Point
+	for k := range l.x {
+		if math.IsNaN(l.y[k]) {
+			c.StrokeLines(ls, run)
+			run = nil
+			continue
+		}
+		pt := vg.Point{X: x(l.x[k]), Y: y(l.y[k])}
+		run = append(run, pt)
+		taken.add(vg.Rectangle{Min: vg.Point{X: pt.X - 1, Y: pt.Y - 1}, Max: vg.Point{X: pt.X + 1, Y: pt.Y + 1}})
+	}
+	c.StrokeLines(ls, run)
+	const n = 7
+	for k := 0; k < n; k++ {
+		at := f.x0 + (f.x1-f.x0)*(float64(k)+0.35+0.12*float64(i))/n
+		j := sort.SearchFloat64s(l.x, at)
+		if j > 0 && j < len(l.x) && !math.IsNaN(l.y[j]) {
+			c.DrawGlyph(draw.GlyphStyle{Color: look.color, Radius: 2.4, Shape: look.mark}, vg.Point{X: x(l.x[j]), Y: y(l.y[j])})
+		}
+	}
+}
+
+// plotLevel draws a limit with its words at the line.
+func (f *chart) plotLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level, taken *labels) {
+	ls := draw.LineStyle{Color: black, Width: 1, Dashes: []vg.Length{5, 2, 1, 2}}
+	c.StrokeLine2(ls, x(l.from), y(l.y), x(l.to), y(l.y))
+	st := f.style(false)
+	w, h := st.Width(l.words)+3, vg.Length(f.size*1.15)
+	from := vg.Point{X: x(l.from) + 2, Y: y(l.y)}
+	var at []vg.Point
+	for k := 0; k <= 8; k++ { // along the line, above first
+		px := from.X + (max(x(l.to)-w-2, c.Min.X+2)-from.X)*vg.Length(k)/8
+		px = min(max(px, c.Min.X+2), c.Max.X-w)
+		at = append(at, vg.Point{X: px, Y: y(l.y) + 2}, vg.Point{X: px, Y: y(l.y) - h - 1})
+	}
+	f.write(c, st, l.words, taken.best(at, w, h, c.Rectangle), w, h)
+}
+
+// words puts a label beside a point, where it covers least.
+func (f *chart) words(c draw.Canvas, s string, p vg.Point, away vg.Length, taken *labels, bold bool) {
+	if s == "" {
+		return
+	}
+	st := f.style(bold)
+	w, h := st.Width(s)+3, vg.Length(f.size*1.15)
+	var at []vg.Point
+	for _, step := range []vg.Length{1, 2.5, 4.5} {
+		for _, v := range []vg.Length{1, -1} {
+			dy := v*away*step - h*vg.Length((1-v)/2)
+			at = append(at, vg.Point{X: p.X + away, Y: p.Y + dy}, vg.Point{X: p.X - w - away, Y: p.Y + dy})
+		}
+	}
+	f.write(c, st, s, taken.best(at, w, h, c.Rectangle), w, h)
+}
+
+// write puts words on a white ground.
+func (f *chart) write(c draw.Canvas, st text.Style, s string, at vg.Point, w, h vg.Length) {
+	c.FillPolygon(color.White, []vg.Point{at, {X: at.X + w, Y: at.Y}, {X: at.X + w, Y: at.Y + h}, {X: at.X, Y: at.Y + h}})
+	c.FillText(st, vg.Point{X: at.X + 1.5, Y: at.Y + h*0.2}, s)
+}
+
+// labels remembers what is taken on a chart.
+type labels struct{ boxes []vg.Rectangle }
+
+func (t *labels) add(r vg.Rectangle) { t.boxes = append(t.boxes, r) }
+
+// best takes the first of the places that covers nothing, or the one that covers least, within bounds.
+func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) vg.Point {
+	least, found := math.Inf(1), at[0]
+	for _, p := range at {
+		r := vg.Rectangle{Min: p, Max: vg.Point{X: p.X + w, Y: p.Y + h}}
+		cost := 0.0
+		if r.Min.X < in.Min.X || r.Max.X > in.Max.X+1 || r.Min.Y < in.Min.Y || r.Max.Y > in.Max.Y {
+			cost += 1000
+		}
+		for _, b := range t.boxes {
+			dx, dy := min(r.Max.X, b.Max.X)-max(r.Min.X, b.Min.X), min(r.Max.Y, b.Max.Y)-max(r.Min.Y, b.Min.Y)
+			if dx > 0 && dy > 0 {
+				cost += 1 + float64(dx*dy)
+			}
+		}
+		if cost < least {
+			least, found = cost, p
+		}
+		if cost == 0 {
+			break
+		}
+	}
+	t.add(vg.Rectangle{Min: found, Max: vg.Point{X: found.X + w, Y: found.Y + h}})
+	return found
+}
+
+// plotEnds names the curves at their right ends, moved apart where they would touch.
+func (f *chart) plotEnds(c draw.Canvas, y func(float64) vg.Length) {
+	type end struct {
+		i      int
+		at, to vg.Length
+		lines  []string
+	}
+	var ends []end
+	st := f.style(false)
+	lh := vg.Length(f.size * 1.2)
+	for i := range f.lines {
+		l := &f.lines[i]
+		for k := len(l.y) - 1; k >= 0; k-- {
+			if !math.IsNaN(l.y[k]) {
+				name := wrap(unseen{}.clean(l.name), (f.ends-16)*mmPerPt, f.size, false)
+				ends = append(ends, end{i, y(l.y[k]), y(l.y[k]), name})
+				break
+			}
+		}
+	}
+	sort.SliceStable(ends, func(a, b int) bool { return ends[a].at < ends[b].at })
+	half := func(e *end) vg.Length { return lh*vg.Length(len(e.lines))/2 + 1 }
+	for range 60 {
+		for k := range ends {
+			e := &ends[k]
+			if k > 0 {
+				if gap := e.to - half(e) - ends[k-1].to - half(&ends[k-1]); gap < 0 {
+					e.to -= gap / 2
+					ends[k-1].to += gap / 2
+				}
+			}
+		}
+		for k := range ends {
+			ends[k].to = min(max(ends[k].to, c.Min.Y+half(&ends[k])), c.Max.Y-half(&ends[k]))
+		}
+	}
+	for _, e := range ends {
+		look := looks[e.i%len(looks)]
+		c.StrokeLine2(draw.LineStyle{Color: look.color, Width: 0.7}, c.Max.X, e.at, c.Max.X+7, e.to)
+		c.DrawGlyph(draw.GlyphStyle{Color: look.color, Radius: 2.4, Shape: look.mark}, vg.Point{X: c.Max.X + 9, Y: e.to})
+		for k, s := range e.lines {
+			c.FillText(st, vg.Point{X: c.Max.X + 14, Y: e.to + half(&e) - 1 - lh*vg.Length(float64(k)+0.8)}, s)
+		}
+	}
+}
+
+// ticksTo gives round values from lo to hi, about n of them.
+func ticksTo(lo, hi float64, steps []float64, n int) []float64 {
+	step := steps[len(steps)-1]
+	for _, s := range steps {
+		if (hi-lo)/s <= float64(n) {
+			step = s
+			break
+		}
+	}
+	for (hi-lo)/step > float64(2*n) {
+		step *= 2
+	}
+	var t []float64
+	for k := math.Ceil(lo/step - 1e-9); k*step <= hi+1e-9*step; k++ {
+		t = append(t, k*step+0)
+	}
+	return t
+}
+
+// clockAxis gives the unit of time of a chart in words, its length in seconds, and the marks.
+func clockAxis(endS float64) (name string, unitS float64, at []float64) {
+	if endS <= 4*3600 {
+		return say("axis minutes"), 60, ticksTo(0, endS/60, []float64{1, 2, 5, 10, 15, 20, 30, 60}, 9)
+	}
+	return say("axis hours"), 3600, ticksTo(0, endS/3600, []float64{0.5, 1, 2, 3, 4, 6, 12, 24, 48, 96, 168}, 10)
+}
+
+// shown turns °C into the unit of the charts.
+func (h *Head) shown(c float64) float64 {
+	if h.Fahrenheit {
+		return fahrenheit(c)
+	}
+	return c
+}
+
+func (h *Head) degree() string {
+	if h.Fahrenheit {
+		return "°F"
+	}
+	return "°C"
+}
+
+// chartTimes are close together after each change, s; each change comes once, with the value before it.
+func chartTimes(h *model.History) []float64 {
+	n := min(60, max(8, 360/max(1, len(h.Spans))))
+	t := []float64{0}
+	for _, sp := range h.Spans {
+		for k := 1; k <= n; k++ {
+			f := float64(k) / float64(n)
+			t = append(t, sp.StartS+(sp.EndS-sp.StartS)*f*(0.35+0.65*f))
+		}
+		t[len(t)-1] = sp.EndS
+	}
+	return t
+}
+
+// history makes the temperature-time chart. With everything it shows surface and medium too.
+func (h *Head) history(p *Product, d *deciding, size, ends float64, everything bool) *chart {
+	hist := d.history
+	name, unitS, ticks := clockAxis(hist.EndS())
+	f := &chart{xName: name, yName: say("axis temperature", h.degree()), x0: 0, x1: hist.EndS() / unitS, xTicks: ticks, size: size, ends: ends}
+	times := chartTimes(hist)
+	course := func(name string, on *model.History, at model.Place) {
+		c := make([]float64, len(times))
+		on.Course(at, times, c)
+		l := line{name: name}
+		for i := range times {
+			l.x, l.y = append(l.x, times[i]/unitS), append(l.y, h.shown(c[i]))
+		}
+		f.lines = append(f.lines, l)
+	}
+	course(d.placeName, hist, d.place)
+	if everything {
+		h.others(p, d, f, course, times, unitS)
+	}
+	lo, hi := math.Inf(1), math.Inf(-1)
+	for _, l := range f.lines {
+		for _, v := range l.y {
+			if !math.IsNaN(v) {
+				lo, hi = min(lo, v), max(hi, v)
+			}
+		}
+	}
+	for _, l := range h.levels(p, hist, unitS) {
+		lo, hi = min(lo, l.y), max(hi, l.y)
+		f.levels = append(f.levels, l)
+	}
+	f.y0 = lo - 0.06*(hi-lo) - 1
+	f.y1 = hi + 0.14*(hi-lo) + 1
+	f.yTicks = ticksTo(f.y0, f.y1-0.08*(hi-lo), []float64{1, 2, 5, 10, 20, 25, 50, 100}, 8)
+	for _, sp := range hist.Spans {
+		f.bands = append(f.bands, band{sp.Step.Name, sp.StartS / unitS, sp.EndS / unitS})
+	}
+	f.spots = h.spots(d, hist, unitS)
+	return f
+}
+
+// others adds surface, medium and the run with the lower conductivity.
+func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *model.History, model.Place), times []float64, unitS float64) {
+	hist := d.history
+	if hist.Recorded {
+		for _, pt := range hist.Points {
+			if pt.Place != d.place {
+				course(pt.Name, hist, pt.Place)
+			}
+		}
+	} else if at, ok := surfacePlace(&p.Product); ok && at != d.place {
+		course(say("line surface"), hist, at)
+	}
+	if hist.MediumC != nil {
+		l := line{name: say("line medium")}
+		some := false
+		add := func(t float64, c float64) {
+			l.x, l.y = append(l.x, t/unitS), append(l.y, h.shown(c))
+			some = some || !math.IsNaN(c)
+		}
+		for _, sp := range hist.Spans {
+			for i, t := range times {
+				if t > sp.StartS && t <= sp.EndS {
+					if len(l.x) > 0 && times[i-1] <= sp.StartS || i == 1 {
+						add(sp.StartS, hist.MediumC(sp.StartS+1e-6*(sp.EndS-sp.StartS)))
+					}
+					add(t, hist.MediumC(t))
+				}
+			}
+		}
+		if some {
+			f.lines = append(f.lines, l)
+		}
+	}
+	if p.Low != nil {
+		on, name := p.Low, say("line low")
+		if d.history == p.Low {
+			on, name = p.History, say("line usual")
+		}
+		course(name, on, d.place)
+	}
+}
+
+// surfacePlace is the middle of the top, or the skin of a round piece; false where there is none of its own.
+func surfacePlace(p *model.Product) (model.Place, bool) {
+	switch p.Shape {
+	case model.Stirred, nil:
+		return model.Place{}, false
+	case model.Cylinder, model.Sphere:
+		return model.Place{UpM: p.Size.DiameterM / 2}, true
+	case model.ShortCylinder:
+		return model.Place{UpM: p.Size.LengthM / 2}, true
+	}
+	return model.Place{UpM: p.Size.ThicknessM / 2}, true
+}
+
+// levels are the temperatures of the limits, each once, over the stages that they are about.
+func (h *Head) levels(p *Product, hist *model.History, unitS float64) []level {
+	var out []level
+	add := func(l *rules.Limit, heading string, c *float64) {
+		if c == nil {
+			return
+		}
+		from, to := 0.0, hist.EndS()
+		if len(l.Stages) > 0 {
+			from, to = math.Inf(1), 0
+			for _, sp := range hist.Spans {
+				for _, st := range l.Stages {
+					if sp.Step.Stage == st {
+						from, to = min(from, sp.StartS), max(to, sp.EndS)
+					}
+				}
+			}
+			if from >= to {
+				return
+			}
+		}
+		n := level{words: say("level", h.typed(l, heading, c), l.Name), y: h.shown(*c), from: from / unitS, to: to / unitS}
+		for i := range out {
+			if out[i].y == n.y {
+				if out[i].from == n.from && out[i].to == n.to || len(out[i].words) > 60 {
+					out[i].from, out[i].to = min(out[i].from, n.from), max(out[i].to, n.to)
+					return
+				}
+				out[i].from, out[i].to = min(out[i].from, n.from), max(out[i].to, n.to)
+				return
+			}
+		}
+		out = append(out, n)
+	}
+	for i := range p.Judgement.Findings {
+		f := &p.Judgement.Findings[i]
+		if f.Limit == nil || f.Verdict == rules.NotApplicable || len(out) > 5 {
+			continue
+		}
+		add(f.Limit, "From", f.Limit.FromC)
+		add(f.Limit, "To", f.Limit.ToC)
+		if f.Limit.FromC == nil && f.Limit.ToC == nil {
+			add(f.Limit, "Clock starts", f.Limit.Clock.AtC)
+		}
+		if t := f.Limit.Table; t != nil && len(t.Rows) > 0 {
+			add(f.Limit, "", &t.Rows[len(t.Rows)-1].C)
+		}
+	}
+	return out
+}
+
+// spots marks where the deciding limit's clock starts and ends.
+func (h *Head) spots(d *deciding, hist *model.History, unitS float64) []spot {
+	if d.finding == nil {
+		return nil
+	}
+	var out []spot
+	add := func(word string, t *float64) {
+		if !finite(t) || *t < 0 || *t > hist.EndS() {
+			return
+		}
+		out = append(out, spot{say(word, duration(*t, nearest)), *t / unitS, h.shown(hist.At(d.place, *t))})
+	}
+	add("spot starts", d.finding.ClockStartS)
+	add("spot ends", d.finding.ClockEndS)
+	if len(out) == 0 {
+		add("spot decides", d.finding.AtS)
+	}
+	return out
+}
+
+// profile makes the chart of temperature against depth at the ends of steps, through the deciding place, along the thickness.
+func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []float64) {
+	hist := d.history
+	if hist.Recorded {
+		return nil, nil
+	}
+	lo, hi, name := depthAxis(&p.Product)
+	if hi <= lo {
+		return nil, nil
+	}
+	times := profileTimes(hist)
+	f := &chart{xName: name, yName: say("axis temperature", h.degree()), x0: 0, x1: (hi - lo) * 1000, size: size, ends: ends}
+	f.xTicks = ticksTo(0, f.x1, []float64{0.5, 1, 2, 5, 10, 20, 25, 50, 100, 200}, 9)
+	f.y0, f.y1 = math.Inf(1), math.Inf(-1)
+	for _, t := range times {
+		l := line{name: say("profile at", duration(t, nearest))}
+		const n = 48
+		for k := 0; k <= n; k++ {
+			at := d.place
+			at.UpM = lo + (hi-lo)*float64(k)/n
+			v := h.shown(hist.At(at, t))
+			l.x, l.y = append(l.x, (at.UpM-lo)*1000), append(l.y, v)
+			f.y0, f.y1 = min(f.y0, v), max(f.y1, v)
+		}
+		f.lines = append(f.lines, l)
+	}
+	room := 0.08*(f.y1-f.y0) + 1
+	f.y0, f.y1 = f.y0-room, f.y1+room
+	f.yTicks = ticksTo(f.y0, f.y1, []float64{1, 2, 5, 10, 20, 25, 50, 100}, 7)
+	for _, pt := range hist.Points {
+		if pt.Name != "centre" && pt.AcrossM == d.place.AcrossM && pt.AlongM == d.place.AlongM {
+			f.spots = append(f.spots, spot{pt.Name, (pt.UpM - lo) * 1000, h.shown(hist.At(pt.Place, times[len(times)-1]))})
+		}
+	}
+	return f, times
+}
+
+// depthAxis is the way through the product: along the thickness, the axis or the radius.
+func depthAxis(p *model.Product) (lo, hi float64, name string) {
+	switch p.Shape {
+	case model.Stirred, nil:
+		return 0, 0, ""
+	case model.Cylinder, model.Sphere:
+		return 0, p.Size.DiameterM / 2, say("axis radius")
+	case model.ShortCylinder:
+		return -p.Size.LengthM / 2, p.Size.LengthM / 2, say("axis depth")
+	}
+	return -p.Size.ThicknessM / 2, p.Size.ThicknessM / 2, say("axis depth")
+}
+
+// profileTimes are three to six instants: the ends of steps, and the middles of the longest ones where there are too few.
+func profileTimes(h *model.History) []float64 {
+	var t []float64
+	for _, sp := range h.Spans {
+		t = append(t, sp.EndS)
+	}
+	if len(t) > 6 { // the first, the last, and four evenly between
+		n := len(t)
+		t = []float64{t[0], t[n/5], t[2*n/5], t[3*n/5], t[4*n/5], t[n-1]}
+	}
+	for _, sp := range h.Spans {
+		if len(t) < 5 && len(h.Spans) < 3 {
+			t = append(t, sp.StartS+(sp.EndS-sp.StartS)/4, sp.StartS+(sp.EndS-sp.StartS)/2)
+		} else if len(t) < 6 {
+			t = append(t, sp.StartS+(sp.EndS-sp.StartS)/2)
+		}
+	}
+	sort.Float64s(t)
+	return t[:min(len(t), 6)]
+}

@@ -1,0 +1,113 @@
+package report
+
+import (
+	"math"
+	"sort"
+
+	"slowpoint/model"
+	"slowpoint/rules"
+)
+
+// deciding is the finding that settles a product's verdict, and where its picture is taken.
+type deciding struct {
+	finding   *rules.Finding // nil: no limit judged
+	history   *model.History // the run that it belongs to
+	place     model.Place
+	placeName string
+}
+
+// tightness orders findings by how little room they leave: 1 is the room below which a caution is due (2 K, or a tenth of the time).
+func tightness(f *rules.Finding) float64 {
+	t := math.Inf(1)
+	if finite(f.MarginK) {
+		t = min(t, *f.MarginK/2)
+	}
+	if finite(f.MarginS) {
+		need := 600.0
+		if finite(f.Required) && f.Unit == "min" && *f.Required > 0 {
+			need = *f.Required * 60
+		}
+		t = min(t, *f.MarginS/(0.1*need))
+	}
+	return t
+}
+
+// weight orders verdicts, the worst first.
+func weight(v rules.Verdict) int { return [...]int{1, 2, 0, 3}[v] }
+
+// worstFirst gives the findings in the order of their weight: must before advice, not met, cannot tell, met by the tightest, not applicable.
+func worstFirst(fs []rules.Finding) []*rules.Finding {
+	out := make([]*rules.Finding, len(fs))
+	for i := range fs {
+		out[i] = &fs[i]
+	}
+	rank := map[string]int{"must": 0, "advice": 1, "alternative": 2}
+	sort.SliceStable(out, func(i, j int) bool {
+		a, b := out[i], out[j]
+		na, nb := a.Verdict == rules.NotApplicable, b.Verdict == rules.NotApplicable
+		switch {
+		case na != nb:
+			return nb
+		case rank[a.Level] != rank[b.Level]:
+			return rank[a.Level] < rank[b.Level]
+		case a.Verdict != b.Verdict:
+			return weight(a.Verdict) < weight(b.Verdict)
+		}
+		return tightness(a) < tightness(b)
+	})
+	return out
+}
+
+// decides finds the deciding finding and the place and run that pictures show.
+func (p *Product) decides() *deciding {
+	d := &deciding{history: p.History}
+	for _, f := range worstFirst(p.Judgement.Findings) {
+		if f.Level == "must" && f.Verdict != rules.NotApplicable {
+			d.finding = f
+			break
+		}
+	}
+	f := d.finding
+	if f != nil && f.LowConductivity && p.Low != nil {
+		d.history = p.Low
+	}
+	if len(d.history.Points) > 0 {
+		d.place, d.placeName = d.history.Points[0].Place, d.history.Points[0].Name
+	}
+	if f != nil && f.Place != nil {
+		d.place, d.placeName = *f.Place, f.PlaceName
+	}
+	if d.placeName == "" || d.placeName == "every point" {
+		d.placeName = placeWords(p.Product.Shape, d.place)
+	}
+	return d
+}
+
+// Row is one line of the overview of a plan.
+type Row struct {
+	Product, Process string
+	Verdict          rules.Verdict
+	Why              string
+	Deciding         string   // the limit that settles the verdict
+	MarginK          *float64 // of the deciding limit
+	MarginS          *float64
+	Problems         int    // warnings that touch the product
+	File             string // name of its document; set by whoever names the files
+	tight            float64
+}
+
+// Row gives the product's line of the overview.
+func (p *Product) Row() Row {
+	r := Row{Product: p.Product.Name, Process: p.Process, Verdict: p.Judgement.Verdict, Why: p.Judgement.Why, tight: math.Inf(1)}
+	if d := p.decides(); d.finding != nil {
+		f := d.finding
+		r.MarginK, r.MarginS, r.tight = f.MarginK, f.MarginS, tightness(f)
+		if f.Limit != nil {
+			r.Deciding = f.Limit.Name
+		}
+		if r.Why == "" {
+			r.Why = f.Why
+		}
+	}
+	return r
+}

@@ -1,0 +1,205 @@
+package report
+
+import (
+	"fmt"
+	"sort"
+	"strings"
+	"sync"
+
+	"codeberg.org/go-fonts/dejavu/dejavusans"
+	"codeberg.org/go-fonts/dejavu/dejavusansbold"
+	xfont "golang.org/x/image/font"
+	"golang.org/x/image/font/opentype"
+	"golang.org/x/image/font/sfnt"
+	fix "golang.org/x/image/math/fixed"
+	"golang.org/x/text/unicode/norm"
+	"gonum.org/v1/plot/font"
+	"gonum.org/v1/plot/text"
+)
+
+// family is the name of the font in the documents: DejaVu Sans, Latin, Greek, Cyrillic and Vietnamese.
+const family = "dejavu"
+
+// typefaces is what all documents share and nobody changes: the width of each character and the fonts that charts measure with.
+type typefaces struct {
+	width   [2][65536]int16 // thousandths of the type size, regular and bold; -1: no glyph
+	measure text.Handler
+}
+
+// faces reads the fonts once.
+var faces = sync.OnceValue(func() *typefaces {
+	t := &typefaces{}
+	var all font.Collection
+	for i, ttf := range [][]byte{dejavusans.TTF, dejavusansbold.TTF} {
+		f, err := opentype.Parse(ttf)
+		if err != nil {
+			panic(err) // the font is compiled in
+		}
+		widths(&t.width[i], f)
+		all = append(all, font.Face{Font: chartFont(0, i == 1), Face: f})
+	}
+	t.measure = text.Plain{Fonts: font.NewCache(all)}
+	return t
+})
+
+// widths fills the table of one font.
+func widths(table *[65536]int16, f *sfnt.Font) {
+	var b sfnt.Buffer
+	em := fix.I(1000)
+	for r := range table {
+		table[r] = -1
+		g, err := f.GlyphIndex(&b, rune(r))
+		if err != nil || g == 0 {
+			continue
+		}
+		if a, err := f.GlyphAdvance(&b, g, em, xfont.HintingNone); err == nil {
+			table[r] = int16(a.Round())
+		}
+	}
+}
+
+// chartFont is the font of the charts at a size in pt.
+func chartFont(size font.Length, bold bool) font.Font {
+	f := font.Font{Typeface: "DejaVu", Variant: "Sans", Size: size}
+	if bold {
+		f.Weight = xfont.WeightBold
+	}
+	return f
+}
+
+// widthMM is the width of clean text in mm at a size in pt.
+func widthMM(s string, size float64, bold bool) float64 {
+	w := &faces().width[btoi(bold)]
+	sum := 0
+	for _, r := range s {
+		if r < 65536 && w[r] > 0 {
+			sum += int(w[r])
+		}
+	}
+	return float64(sum) / 1000 * size * mmPerPt
+}
+
+// wrap breaks clean text into lines no wider than width mm; there is at least one line. A word that is too long is cut.
+func wrap(s string, width, size float64, bold bool) []string {
+	var lines []string
+	for _, par := range strings.Split(s, "\n") {
+		line := ""
+		for _, word := range strings.Fields(par) {
+			try := word
+			if line != "" {
+				try = line + " " + word
+			}
+			if widthMM(try, size, bold) <= width {
+				line = try
+				continue
+			}
+			if line != "" {
+				lines = append(lines, line)
+			}
+			for widthMM(word, size, bold) > width {
+				n := fitting(word, width, size, bold)
+				lines = append(lines, word[:n])
+				word = word[n:]
+			}
+			line = word
+		}
+		lines = append(lines, line)
+	}
+	return lines
+}
+
+// fitting is how many bytes of a word fit; at least one character.
+func fitting(word string, width, size float64, bold bool) int {
+	n := 0
+	for i, r := range word {
+		end := i + len(string(r))
+		if i > 0 && widthMM(word[:end], size, bold) > width {
+			break
+		}
+		n = end
+	}
+	return n
+}
+
+// shorten cuts clean text to width mm and ends it with an ellipsis if something was lost.
+func shorten(s string, width, size float64, bold bool) string {
+	if widthMM(s, size, bold) <= width {
+		return s
+	}
+	r := []rune(s)
+	for len(r) > 0 && widthMM(string(r)+"…", size, bold) > width {
+		r = r[:len(r)-1]
+	}
+	return strings.TrimSpace(string(r)) + "…"
+}
+
+// unseen collects characters that the font cannot show.
+type unseen map[rune]bool
+
+// clean makes any text printable: composed (NFC), without control characters, and with U+FFFD for what the font lacks.
+func (u unseen) clean(s string) string {
+	plain := true
+	for i := 0; i < len(s); i++ {
+		if s[i] < ' ' || s[i] > '~' {
+			plain = false
+			break
+		}
+	}
+	if plain {
+		return s
+	}
+	w := faces()
+	var b strings.Builder
+	for _, r := range norm.NFC.String(strings.ToValidUTF8(s, "\uFFFD")) {
+		switch {
+		case r == '\n':
+			b.WriteRune(r)
+		case r == '\u00ad', r == '\u200b', r == '\ufeff', r >= 0xfe00 && r <= 0xfe0f: // invisible
+		case r < ' ' || r >= 0x7f && r < 0xa0 || r == '\u2028' || r == '\u2029':
+			b.WriteByte(' ')
+		case r > 0xffff || w.width[0][r] < 0 || w.width[1][r] < 0:
+			u[r] = true
+			b.WriteRune('\uFFFD')
+		default:
+			b.WriteRune(r)
+		}
+	}
+	return b.String()
+}
+
+// list names the characters by code point, at most ten.
+func (u unseen) list() string {
+	var rs []rune
+	for r := range u {
+		rs = append(rs, r)
+	}
+	sort.Slice(rs, func(i, j int) bool { return rs[i] < rs[j] })
+	var s []string
+	for i, r := range rs {
+		if i == 10 {
+			return strings.Join(s, ", ") + say("glyph more", len(rs)-10)
+		}
+		s = append(s, fmt.Sprintf("U+%04X", r))
+	}
+	return strings.Join(s, ", ")
+}
+
+// flat is text fit for a bookmark or a title, which no font limits: composed, one line, nothing above U+FFFF.
+func flat(s string) string {
+	return strings.Map(func(r rune) rune {
+		switch {
+		case r < ' ' || r >= 0x7f && r < 0xa0:
+			return ' '
+		case r > 0xffff:
+			return '\uFFFD'
+		}
+		return r
+	}, norm.NFC.String(strings.ToValidUTF8(s, "\uFFFD")))
+}
+
+func btoi(b bool) int {
+	if b {
+		return 1
+	}
+	return 0
+}

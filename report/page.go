@@ -1,0 +1,412 @@
+package report
+
+import (
+	"bytes"
+	"fmt"
+	"io"
+	"sync"
+	"time"
+
+	"codeberg.org/go-fonts/dejavu/dejavusans"
+	"codeberg.org/go-fonts/dejavu/dejavusansbold"
+	"github.com/jung-kurt/gofpdf"
+
+	"slowpoint/rules"
+)
+
+// The frame of every page, mm from its top: one layout for A4 and Letter, so both break at the same lines.
+const (
+	headerY   = 15.0  // baseline of the running title
+	topY      = 20.0  // where text begins
+	bottomY   = 261.0 // where text ends
+	footerY   = 263.5 // the line above the footer
+	frameWide = 180.0 // mm
+)
+
+// The type sizes, pt.
+const (
+	small   = 9.0
+	body    = 9.5
+	kitchen = 11.0 // the least on the page for the operator
+	leading = 1.32 // line height over type size
+)
+
+// common holds the characters that nearly every report needs. Their font is cut out once and shared (as copies): reading and
+// cutting the whole font would take longer than all the rest of a report.
+const common = " !\"#$%&'()*+,-./0123456789:;<=>?@ABCDEFGHIJKLMNOPQRSTUVWXYZ[\\]^_`abcdefghijklmnopqrstuvwxyz{|}~" +
+	"¡£§©«¬®°±²³´µ¶·¹º»¼½¾¿ÀÁÂÃÄÅÆÇÈÉÊËÌÍÎÏÑÒÓÔÕÖ×ØÙÚÛÜÝßàáâãäåæçèéêëìíîïñòóôõö÷øùúûüýÿ–—‘’“”„…•√≈≤≥≠→←↑↓−☐☑✓✗●○■□▲△◆◇×₁₂⁻\uFFFD"
+
+// fontFiles holds a cut-out and a whole font file in each weight; whoever uses one clones it, for the PDF library writes into it.
+var fontFiles = sync.OnceValue(func() (f struct{ cut, whole [2][]byte }) {
+	f.whole = [2][]byte{dejavusans.TTF, dejavusansbold.TTF}
+	for i, ttf := range f.whole {
+		f.cut[i] = gofpdf.UTF8CutFont(bytes.Clone(ttf), common)
+	}
+	return f
+})
+
+var isCommon = sync.OnceValue(func() map[rune]bool {
+	m := map[rune]bool{}
+	for _, r := range common {
+		m[r] = true
+	}
+	return m
+})
+
+// doc is a document being written: a page, a position on it, and what the running titles will say.
+type doc struct {
+	pdf    *gofpdf.Fpdf
+	head   *Head
+	left   float64 // mm
+	y      float64 // mm from the top of the page
+	title  string  // running title of the pages to come
+	titles []string
+	begins []int // the pages, counted from 0, on which a part with page numbers of its own begins
+	unseen unseen
+	whole  [2]bool // whether the whole font has been added, regular and bold
+	low    bool    // drawing below bottomY is meant (signature lines)
+}
+
+// newDoc opens a document without a page.
+func newDoc(h *Head, title string) *doc {
+	paper := "A4"
+	if h.Paper == "Letter" {
+		paper = "Letter"
+	}
+	p := gofpdf.New("P", "mm", paper, "")
+	date := h.Date
+	if date.IsZero() {
+		date = time.Unix(0, 0)
+	}
+	p.SetCreationDate(date.UTC())
+	p.SetModificationDate(date.UTC())
+	p.SetCatalogSort(true)
+	p.SetProducer("gofpdf", true)
+	p.SetCreator(flat("slowpoint "+h.Version), true)
+	p.SetTitle(flat(title), true)
+	p.SetAutoPageBreak(false, 0)
+	for i, b := range fontFiles().cut {
+		p.AddUTF8FontFromBytes(family, [2]string{"", "B"}[i], bytes.Clone(b))
+	}
+	w, _ := p.GetPageSize()
+	return &doc{pdf: p, head: h, left: (w - frameWide) / 2, title: title, unseen: unseen{}}
+}
+
+// clean makes text printable and remembers what could not be shown.
+func (d *doc) clean(s string) string { return d.unseen.clean(s) }
+
+// page begins a new page.
+func (d *doc) page() {
+	d.pdf.AddPage()
+	d.titles = append(d.titles, d.title)
+	d.y = topY
+}
+
+// need begins a new page unless h mm are left on this one.
+func (d *doc) need(h float64) {
+	if d.y+h > bottomY+0.01 {
+		d.page()
+	}
+}
+
+// put writes one line of clean text with its baseline at y, black.
+func (d *doc) put(x, y float64, s string, size float64, bold bool) {
+	fam, style := family, ""
+	if bold {
+		style = "B"
+	}
+	for _, r := range s {
+		if r > '~' && !isCommon()[r] {
+			fam = family + "whole"
+			if i := btoi(bold); !d.whole[i] {
+				d.pdf.AddUTF8FontFromBytes(fam, style, bytes.Clone(fontFiles().whole[i]))
+				d.whole[i] = true
+			}
+			break
+		}
+	}
+	d.pdf.SetFont(fam, style, size)
+	d.pdf.SetTextColor(0, 0, 0)
+	d.pdf.Text(x, y, s)
+}
+
+// height of a line of a size, mm.
+func height(size float64) float64 { return size * leading * mmPerPt }
+
+// style of a paragraph.
+type style struct {
+	size   float64
+	bold   bool
+	indent float64 // mm
+	after  float64 // mm of space below
+}
+
+// para writes text over as many lines and pages as it takes.
+func (d *doc) para(s string, st style) {
+	for _, line := range wrap(d.clean(s), frameWide-st.indent, st.size, st.bold) {
+		d.need(height(st.size))
+		d.y += height(st.size)
+		d.put(d.left+st.indent, d.y-0.28*height(st.size), line, st.size, st.bold)
+	}
+	d.y += st.after
+}
+
+// text is a paragraph in the usual size.
+func (d *doc) text(s string) { d.para(s, style{size: body, after: 1.6}) }
+
+// item is a paragraph behind a mark; continued lines hang.
+func (d *doc) item(mark, s string, size float64) {
+	in := widthMM(mark+"  ", size, false)
+	lines := wrap(d.clean(s), frameWide-in, size, false)
+	for i, line := range lines {
+		d.need(height(size))
+		d.y += height(size)
+		if i == 0 {
+			d.put(d.left, d.y-0.28*height(size), mark, size, false)
+		}
+		d.put(d.left+in, d.y-0.28*height(size), line, size, false)
+	}
+	d.y += 1
+}
+
+// heading begins a section: it stays with at least keep mm of what follows, and is a bookmark at a level.
+func (d *doc) heading(s string, level int, keep float64) {
+	size := [...]float64{16, 12.5, 10.5}[level]
+	if d.y > topY {
+		d.y += [...]float64{5, 4, 2.5}[level]
+	}
+	d.need(height(size) + keep)
+	d.pdf.Bookmark(flat(s), level, d.y)
+	d.para(s, style{size: size, bold: true, after: [...]float64{2, 1.5, 0.8}[level]})
+}
+
+// rule draws a line across from x to x2 at y.
+func (d *doc) rule(x, x2, y, pt float64) {
+	d.pdf.SetDrawColor(0, 0, 0)
+	d.pdf.SetLineWidth(pt * mmPerPt)
+	d.pdf.SetDashPattern(nil, 0)
+	d.pdf.Line(x, y, x2, y)
+}
+
+// frame draws a box.
+func (d *doc) frame(x, y, w, h, pt float64) {
+	d.pdf.SetDrawColor(0, 0, 0)
+	d.pdf.SetLineWidth(pt * mmPerPt)
+	d.pdf.SetDashPattern(nil, 0)
+	d.pdf.Rect(x, y, w, h, "D")
+}
+
+// col is a column of a table.
+type col struct {
+	title string
+	wide  float64 // mm
+	bold  bool
+	right bool
+}
+
+const cellPad = 1.2 // mm beside the text of a cell
+
+// table writes rows with a header that repeats on every page. A row is split only if it is taller than a page.
+func (d *doc) table(cols []col, rows [][]string, size float64) {
+	titles := make([][]string, len(cols))
+	for i, c := range cols {
+		titles[i] = wrap(d.clean(c.title), c.wide-2*cellPad, size, true)
+	}
+	headed := -1
+	header := func() {
+		if len(cols) > 0 {
+			d.row(cols, titles, size, true)
+			d.rule(d.left, d.left+total(cols), d.y, 1)
+		}
+		headed = d.pdf.PageNo()
+	}
+	d.need(3 * height(size))
+	for _, r := range rows {
+		lines := make([][]string, len(cols))
+		n := 1
+		for i, c := range cols {
+			s := ""
+			if i < len(r) {
+				s = r[i]
+			}
+			lines[i] = wrap(d.clean(s), c.wide-2*cellPad, size, c.bold)
+			n = max(n, len(lines[i]))
+		}
+		most := int((bottomY - topY - 20) / height(size))
+		for n > 0 {
+			part := min(n, most)
+			d.need(float64(part)*height(size) + 1 + btof(headed < 0)*2*height(size))
+			if headed != d.pdf.PageNo() {
+				header()
+			}
+			chunk := make([][]string, len(cols))
+			for i := range lines {
+				k := min(part, len(lines[i]))
+				chunk[i], lines[i] = lines[i][:k], lines[i][k:]
+			}
+			d.row(cols, chunk, size, false)
+			d.rule(d.left, d.left+total(cols), d.y, 0.7)
+			n -= part
+		}
+	}
+	if len(rows) == 0 {
+		header()
+	}
+	d.y += 2
+}
+
+// row writes the lines of one row.
+func (d *doc) row(cols []col, lines [][]string, size float64, bold bool) {
+	x, n := d.left, 1
+	for i, c := range cols {
+		n = max(n, len(lines[i]))
+		for k, s := range lines[i] {
+			at := x + cellPad
+			if c.right {
+				at = x + c.wide - cellPad - widthMM(s, size, bold || c.bold)
+			}
+			d.put(at, d.y+0.5+float64(k+1)*height(size)-0.28*height(size), s, size, bold || c.bold)
+		}
+		x += c.wide
+	}
+	d.y += float64(n)*height(size) + 1
+}
+
+func total(cols []col) float64 {
+	w := 0.0
+	for _, c := range cols {
+		w += c.wide
+	}
+	return w
+}
+
+func btof(b bool) float64 { return float64(btoi(b)) }
+
+// pairs writes names and values in two columns, leaving out blank values.
+func (d *doc) pairs(rows [][2]string, wide float64) {
+	var r [][]string
+	for _, p := range rows {
+		if p[1] != "" {
+			r = append(r, []string{p[0], p[1]})
+		}
+	}
+	cols := []col{{wide: wide, bold: true}, {wide: frameWide - wide}}
+	for _, line := range r {
+		a := wrap(d.clean(line[0]), cols[0].wide-2*cellPad, small, true)
+		b := wrap(d.clean(line[1]), cols[1].wide-2*cellPad, small, false)
+		d.need(float64(min(len(b), 40))*height(small) + 1)
+		for len(b) > 40 {
+			d.row(cols, [][]string{a, b[:40]}, small, false)
+			a, b = nil, b[40:]
+			d.need(float64(min(len(b), 40))*height(small) + 1)
+		}
+		d.row(cols, [][]string{a, b}, small, false)
+	}
+	d.y += 1.5
+}
+
+// boxed writes paragraphs in a frame.
+func (d *doc) boxed(lines []string, st style) {
+	const pad = 2.5
+	var all []string
+	for _, s := range lines {
+		all = append(all, wrap(d.clean(s), frameWide-2*pad, st.size, st.bold)...)
+	}
+	for len(all) > 0 {
+		n := min(len(all), int((bottomY-topY-2*pad)/height(st.size)))
+		h := float64(n)*height(st.size) + 2*pad
+		d.need(h)
+		d.frame(d.left, d.y, frameWide, h, 1)
+		for i, s := range all[:n] {
+			d.put(d.left+pad, d.y+pad+(float64(i+1)-0.28)*height(st.size), s, st.size, st.bold)
+		}
+		d.y += h + 2.5
+		all = all[n:]
+	}
+}
+
+// finish writes the running titles and page numbers and sends the document.
+func (d *doc) finish(w io.Writer) (err error) {
+	defer func() {
+		if r := recover(); r != nil {
+			err = fmt.Errorf("PDF: %v", r)
+		}
+	}()
+	n := d.pdf.PageCount()
+	for i := 1; i <= n; i++ {
+		d.pdf.SetPage(i)
+		d.pdf.SetFont(family, "", 1) // the last page's font is not this page's
+		d.running(i, n)
+	}
+	return d.pdf.Output(w)
+}
+
+// running writes the header and the footer of a page.
+func (d *doc) running(i, n int) {
+	h := d.head
+	right := d.clean(h.planName())
+	right = shorten(right, 70, small, false)
+	left := shorten(d.clean(d.titles[i-1]), frameWide-4-widthMM(right, small, false), small, true)
+	d.put(d.left, headerY, left, small, true)
+	d.put(d.left+frameWide-widthMM(right, small, false), headerY, right, small, false)
+	d.rule(d.left, d.left+frameWide, headerY+1.5, 0.7)
+	d.rule(d.left, d.left+frameWide, footerY, 0.7)
+	number := say("page", i, n)
+	d.put(d.left+frameWide-widthMM(number, small, false), footerY+3.6, number, small, false)
+	d.put(d.left, footerY+3.6, shorten(d.clean(say("footer", h.Version, h.digest(), h.day())), 150, small, false), small, false)
+	d.y = footerY
+	note := say("footer not measured")
+	if i == 1 && len(d.unseen) > 0 {
+		note = say("glyphs missing", d.unseen.list())
+	}
+	d.put(d.left, footerY+7.4, shorten(note, frameWide, small, i == 1 && len(d.unseen) > 0), small, i == 1 && len(d.unseen) > 0)
+}
+
+// item of the sheet Plan by its name; "" if it is not there.
+func (h *Head) item(name string) string {
+	for _, it := range h.Items {
+		if it.Item == name {
+			return it.Value
+		}
+	}
+	return ""
+}
+
+// planName is what the pages call the plan.
+func (h *Head) planName() string {
+	name := h.item("Plan")
+	if name == "" {
+		name = h.Plan
+	}
+	if e := h.item("Edition"); e != "" {
+		name = say("edition", name, e)
+	}
+	return name
+}
+
+// digest is the beginning of the input's SHA-256, enough to tell two inputs apart.
+func (h *Head) digest() string {
+	if len(h.SHA256) > 12 {
+		return h.SHA256[:12] + "…"
+	}
+	if h.SHA256 == "" {
+		return "–"
+	}
+	return h.SHA256
+}
+
+// day is the date of the run, with the time of day if it has one.
+func (h *Head) day() string {
+	if h.Date.IsZero() {
+		return "–"
+	}
+	if h.Date.Hour() == 0 && h.Date.Minute() == 0 && h.Date.Second() == 0 {
+		return h.Date.Format("2006-01-02")
+	}
+	return h.Date.Format("2006-01-02 15:04")
+}
+
+// verdictWord is the word and a symbol of its own, so that neither colour nor position carries it alone.
+func verdictWord(v rules.Verdict) string {
+	return [...]string{"? CANNOT TELL", "✓ MET", "✗ NOT MET", "– NOT APPLICABLE"}[v]
+}

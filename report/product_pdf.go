@@ -1,0 +1,674 @@
+package report
+
+import (
+	"fmt"
+	"io"
+	"math"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/rules"
+)
+
+// WriteProductPDF writes the report of one product: a page for whoever cooks and probes, then the pages for the auditor.
+// It may run in several goroutines at once.
+func WriteProductPDF(w io.Writer, h *Head, p *Product) error {
+	d := newDoc(h, p.Product.Name)
+	d.product(p)
+	return d.finish(w)
+}
+
+// product writes all pages of a product.
+func (d *doc) product(p *Product) {
+	d.title = p.Product.Name
+	x := &sheet{doc: d, p: p, decides: p.decides(), order: worstFirst(p.Judgement.Findings), cautions: Cautions(d.head, p)}
+	x.operator()
+	x.front()
+	x.limits()
+	x.predicted()
+	x.measured()
+	x.basis()
+	x.warnings()
+	x.readings()
+	x.changes()
+	x.deviation()
+	x.glossary()
+}
+
+// sheet is a product's report being written.
+type sheet struct {
+	*doc
+	p        *Product
+	decides  *deciding
+	order    []*rules.Finding // worst first
+	cautions []Caution
+}
+
+// headline is the verdict in one sentence for everybody.
+func (x *sheet) headline() string {
+	f := x.decides.finding
+	switch {
+	case f == nil || f.Limit == nil:
+		if x.p.Judgement.Why != "" {
+			return say("headline why", x.p.Judgement.Why)
+		}
+		return say("headline none")
+	case f.Verdict == rules.CannotTell:
+		return say("headline cannot tell", f.Limit.Name, f.Why)
+	}
+	room := x.head.room(f)
+	switch {
+	case f.Verdict == rules.Met && room != "":
+		return say("headline met", f.Limit.Name, room)
+	case f.Verdict == rules.NotMet && room != "":
+		return say("headline not met", f.Limit.Name, room)
+	}
+	return say("headline plain", f.Limit.Name, f.Verdict.String(), f.Why)
+}
+
+// counts tells how many limits have which verdict.
+func (x *sheet) counts() string {
+	var n [4]int
+	for _, f := range x.order {
+		if f.Level != "alternative" && !f.LowConductivity {
+			n[f.Verdict]++
+		}
+	}
+	return say("counts", n[rules.Met], n[rules.NotMet], n[rules.CannotTell], n[rules.NotApplicable])
+}
+
+// operator is the one page for whoever cooks and probes.
+func (x *sheet) operator() {
+	d, p := x.doc, x.p
+	d.page()
+	d.pdf.Bookmark(flat(say("operator title")), 0, d.y)
+	size, name := 24.0, d.clean(p.Product.Name)
+	lines := wrap(name, frameWide, size, true)
+	if len(lines) > 2 {
+		size = 16
+		lines = wrap(name, frameWide, size, true)
+		if len(lines) > 2 {
+			lines = []string{lines[0], shorten(strings.Join(lines[1:], " "), frameWide, size, true)}
+		}
+	}
+	for _, s := range lines {
+		d.y += height(size)
+		d.put(d.left, d.y-0.25*height(size), s, size, true)
+	}
+	if p.History != nil {
+		d.para(shorten(d.clean(say("operator process", p.Process, len(p.History.Spans), duration(p.History.EndS(), nearest))), frameWide, kitchen, false), style{size: kitchen, after: 2})
+	}
+	x.verdictBox()
+	x.operatorChart()
+	x.checks()
+	x.lever()
+	x.blanks()
+}
+
+// verdictBox is the word in large type with one sentence beside it.
+func (x *sheet) verdictBox() {
+	d := x.doc
+	word := verdictWord(overall(x.p.Judgement.Verdict))
+	wide := widthMM(word, 20, true) + 8
+	lines := wrap(d.clean(x.headline()), frameWide-wide-4, 12, false)
+	if len(lines) > 5 {
+		lines = append(lines[:4], shorten(strings.Join(lines[4:], " "), frameWide-wide-4, 12, false))
+	}
+	h := max(float64(len(lines))*height(12)+5, 14)
+	d.frame(d.left, d.y, frameWide, h, 2)
+	d.put(d.left+4, d.y+h/2+2.5, word, 20, true)
+	y := d.y + (h-float64(len(lines))*height(12))/2
+	for i, s := range lines {
+		d.put(d.left+wide, y+(float64(i+1)-0.28)*height(12), s, 12, false)
+	}
+	d.y += h + 3
+}
+
+// operatorChart shows the slowest place and the limits.
+func (x *sheet) operatorChart() {
+	if x.p.History == nil {
+		return
+	}
+	d := x.doc
+	f := d.head.history(x.p, x.decides, kitchen, 92, false)
+	const h = 82
+	f.draw(d.canvas(d.left, d.y, frameWide, h))
+	d.y += h + 1
+	d.para(x.slowestSentence(), style{size: kitchen, after: 2})
+}
+
+// slowestSentence says what the line of the slowest place shows.
+func (x *sheet) slowestSentence() string {
+	h, hist := x.head, x.decides.history
+	var s []string
+	for i, sp := range hist.Spans {
+		if i == 4 && len(hist.Spans) > 5 {
+			break
+		}
+		c := hist.At(x.decides.place, sp.EndS)
+		s = append(s, say("at the end of", sp.Step.Name, duration(sp.EndS, nearest), h.temperature(c, nearest)))
+	}
+	key := "chart sentence"
+	if hist == x.p.Low {
+		key = "chart sentence low"
+	}
+	if hist.Recorded {
+		key = "chart sentence record"
+	}
+	return say(key, x.decides.placeName, strings.Join(s, "; "))
+}
+
+// checks says what to check with the probe, where and when.
+func (x *sheet) checks() {
+	d := x.doc
+	d.para(say("checks title"), style{size: 13, bold: true, after: 0.8})
+	n := 0
+	seen := map[string]bool{}
+	for _, f := range x.order {
+		if f.Limit == nil || f.Level != "must" || f.Verdict == rules.NotApplicable || f.Place == nil && f.AtS == nil || seen[f.Limit.Name] {
+			continue
+		}
+		seen[f.Limit.Name] = true
+		if n++; n > 3 {
+			break
+		}
+		place := f.PlaceName
+		if place == "" {
+			place = x.decides.placeName
+		}
+		when := say("check any time")
+		if finite(f.AtS) {
+			when = say("check at", duration(*f.AtS, nearest), x.stepAt(*f.AtS))
+		}
+		d.item(fmt.Sprintf("%d.", n), say("check", when, place, x.head.asks(f.Limit)), kitchen)
+	}
+	if n == 0 {
+		d.item("–", say("check nothing"), kitchen)
+	}
+	d.y++
+}
+
+// stepAt is the name of the step at an instant, s.
+func (x *sheet) stepAt(t float64) string {
+	for _, sp := range x.decides.history.Spans {
+		if t <= sp.EndS {
+			return sp.Step.Name
+		}
+	}
+	return ""
+}
+
+func (x *sheet) lever() {
+	d := x.doc
+	s := x.p.Lever
+	if s == "" {
+		s = say("lever none")
+	}
+	d.para(say("lever title"), style{size: 13, bold: true, after: 0.8})
+	d.para(s, style{size: kitchen, after: 2})
+}
+
+// blanks is room for readings and initials, as many rows as the page has left.
+func (x *sheet) blanks() {
+	d := x.doc
+	citation := ""
+	for _, f := range x.order {
+		if f.Limit != nil && bare(f.Limit) && f.Verdict != rules.NotApplicable {
+			citation = say("operator uncited")
+		}
+	}
+	foot := wrap(d.clean(say("operator decides")+citation), frameWide, kitchen, false)
+	room := bottomY - d.y - float64(len(foot))*height(kitchen) - 2 - 8.5
+	n := max(2, min(6, int(room/8.5)))
+	if room < 17 {
+		d.page()
+	}
+	cols := []float64{32, 32, 46, 34, 36}
+	at := d.left
+	for i, w := range cols {
+		d.put(at+1.5, d.y+5.5, say([...]string{"blank date", "blank time", "blank place", "blank reading", "blank initials"}[i]), kitchen, true)
+		for r := 0; r <= n; r++ {
+			d.frame(at, d.y+float64(r)*8.5, w, 8.5, 0.7)
+		}
+		at += w
+	}
+	d.y += float64(n+1)*8.5 + 2
+	for _, s := range foot {
+		d.y += height(kitchen)
+		d.put(d.left, d.y-0.28*height(kitchen), s, kitchen, false)
+	}
+}
+
+// front is the first page for the auditor.
+func (x *sheet) front() {
+	d, h, p := x.doc, x.head, x.p
+	d.page()
+	d.heading(say("front title", p.Product.Name), 0, 20)
+	d.para(say("front verdict", verdictWord(overall(p.Judgement.Verdict)), x.headline()), style{size: 11, bold: true, after: 1})
+	d.text(x.counts())
+	for _, g := range p.Judgement.Groups {
+		key := "group all"
+		if g.AnyOf {
+			key = "group any"
+		}
+		d.text(say(key, g.Group, g.Verdict.String(), g.DecidedBy))
+	}
+	var missing []string
+	seen := map[*rules.Limit]bool{}
+	for _, f := range x.order {
+		if f.Limit != nil && bare(f.Limit) && f.Verdict != rules.NotApplicable && !seen[f.Limit] {
+			seen[f.Limit] = true
+			missing = append(missing, say("missing line", f.Limit.Name, f.Limit.At.String(), lacks(f.Limit)))
+		}
+	}
+	if len(missing) > 0 {
+		d.boxed(append([]string{say("missing citation")}, missing...), style{size: body, bold: true})
+	}
+	if ps := h.ProblemsOf(p); len(ps) > 0 {
+		d.heading(say("problems title"), 1, 10)
+		x.problems(ps)
+	}
+	d.heading(say("what title"), 1, 20)
+	d.pairs([][2]string{
+		{say("key product"), p.Product.Name}, {say("key family"), p.Family}, {say("key recipe"), p.RecipeVersion}, {say("key batch"), p.Batch},
+		{say("key process"), p.Process}, {say("key note"), p.Note}, {say("key equipment"), x.perStep(func(s *model.Step) string { return s.Equipment })},
+		{say("key load"), x.perStep(func(s *model.Step) string { return s.Load })}}, 45)
+	rows := [][2]string{}
+	for _, it := range h.Items {
+		rows = append(rows, [2]string{it.Item, it.Value})
+	}
+	rows = append(rows, [2]string{say("key file"), h.Plan}, [2]string{say("key digest"), h.SHA256}, [2]string{say("key version"), h.Version},
+		[2]string{say("key date"), h.day()})
+	d.heading(say("plan title"), 1, 20)
+	d.pairs(rows, 45)
+	x.signatures("sign prepared", "sign reviewed", "sign responsible")
+	d.para(strings.Join(CautionText(), " "), style{size: small, after: 1})
+}
+
+func (x *sheet) problems(ps cell.Errors) {
+	var rows [][]string
+	for _, e := range ps {
+		msg := e.Msg
+		if e.Hint != "" {
+			msg += " – " + e.Hint
+		}
+		if e.Typed != "" {
+			msg = say("problem typed", e.Typed, msg)
+		}
+		rows = append(rows, []string{e.At.String(), e.Level.String(), msg})
+	}
+	x.table([]col{{title: say("col place"), wide: 34}, {title: say("col level"), wide: 20}, {title: say("col message"), wide: frameWide - 54}}, rows, small)
+}
+
+// perStep joins what the steps say, each with its name.
+func (x *sheet) perStep(of func(*model.Step) string) string {
+	var s []string
+	for i := range x.p.Steps {
+		if v := strings.TrimSpace(of(&x.p.Steps[i])); v != "" {
+			s = append(s, x.p.Steps[i].Name+": "+v)
+		}
+	}
+	return strings.Join(s, "; ")
+}
+
+// signatures are blank lines for names, signatures and dates.
+func (x *sheet) signatures(keys ...string) {
+	d := x.doc
+	d.need(float64(len(keys))*11 + 4)
+	d.y += 2
+	for _, k := range keys {
+		d.y += 9
+		d.put(d.left, d.y, say(k), small, false)
+		d.rule(d.left+36, d.left+98, d.y+0.8, 0.7)
+		d.put(d.left+101, d.y, say("sign signature"), small, false)
+		d.rule(d.left+118, d.left+148, d.y+0.8, 0.7)
+		d.put(d.left+151, d.y, say("sign date"), small, false)
+		d.rule(d.left+160, d.left+frameWide, d.y+0.8, 0.7)
+	}
+	d.y += 4
+}
+
+// limits are the margin bars and one card a limit.
+func (x *sheet) limits() {
+	d := x.doc
+	d.page()
+	d.heading(say("limits title"), 0, 30)
+	if len(x.order) == 0 {
+		d.text(say("headline none"))
+		return
+	}
+	var counted, idle []*rules.Finding
+	for _, f := range x.order {
+		if f.Verdict == rules.NotApplicable {
+			idle = append(idle, f)
+		} else {
+			counted = append(counted, f)
+		}
+	}
+	if len(counted) > 0 {
+		d.marginBars(counted)
+		d.text(x.barsSentence(counted))
+	}
+	for _, f := range counted {
+		x.card(f)
+	}
+	if len(idle) > 0 {
+		d.heading(say("idle title"), 1, 12)
+		var rows [][]string
+		for _, f := range idle {
+			if f.Limit != nil {
+				rows = append(rows, []string{f.Limit.Name, f.Limit.At.String(), f.Why})
+			}
+		}
+		d.table([]col{{title: say("col limit"), wide: 60, bold: true}, {title: say("col place"), wide: 30}, {title: say("col why"), wide: frameWide - 90}}, rows, small)
+	}
+}
+
+// barsSentence says the same as the bars.
+func (x *sheet) barsSentence(fs []*rules.Finding) string {
+	var s []string
+	for i, f := range fs {
+		if i == 3 {
+			break
+		}
+		if f.Limit == nil {
+			continue
+		}
+		room := x.head.room(f)
+		if room == "" {
+			room = say("no margin")
+		}
+		s = append(s, say("bars one", f.Limit.Name, f.Verdict.String(), room))
+	}
+	return say("bars sentence", strings.Join(s, "; "))
+}
+
+// card is everything about one limit and its finding.
+func (x *sheet) card(f *rules.Finding) {
+	d, h, l := x.doc, x.head, f.Limit
+	if l == nil {
+		return
+	}
+	title := l.Name
+	if f.LowConductivity {
+		title += say("card low")
+	}
+	d.heading(say("card title", title, verdictWord(f.Verdict)), 2, 24)
+	kind := ""
+	if l.Kind != nil {
+		kind = l.Kind.Name
+	}
+	value := h.quantity(f, f.Value, false)
+	if value != "" && finite(f.Required) {
+		value = say("card value", value, h.quantity(f, f.Required, true))
+	}
+	where := f.PlaceName
+	if f.Place != nil && f.PlaceName != "" && f.PlaceName != placeWords(x.p.Product.Shape, *f.Place) {
+		where = say("card where", f.PlaceName, placeWords(x.p.Product.Shape, *f.Place))
+	}
+	when := ""
+	if finite(f.AtS) {
+		when = say("card when", duration(*f.AtS, nearest), x.stepAt(*f.AtS))
+	}
+	d.pairs([][2]string{
+		{say("card asks"), say("card asks line", kind, h.asks(l), stages(l), whereAsked(l), f.Level)},
+		{say("card found"), strings.Trim(value+"; "+f.Why, "; ")},
+		{say("card margin"), h.room(f)},
+		{say("card place"), joined(where, when)},
+		{say("card clock"), x.clockWords(f)},
+		{say("card notes"), strings.Join(f.Notes, "; ")},
+		{say("card citation"), x.cited(l)},
+		{say("card hazard"), joined(prefixed("CCP ", l.CCP), l.Hazard, l.Status, l.Note)},
+		{say("card cells"), refs(f.Cells)},
+	}, 32)
+}
+
+// whereAsked is the place that the limit is about, as typed.
+func whereAsked(l *rules.Limit) string {
+	if l.Where.Name == "" {
+		return "every point"
+	}
+	return l.Where.Name
+}
+
+// cited is the citation as typed, with what is missing.
+func (x *sheet) cited(l *rules.Limit) string {
+	s := citation(l)
+	if bare(l) {
+		s += say("citation lacks", lacks(l))
+	}
+	return s
+}
+
+// clockWords says when the clock starts, in words, and the instants at which it started and ended.
+func (x *sheet) clockWords(f *rules.Finding) string {
+	words := x.head.clock(f.Limit)
+	var s []string
+	if words != "" {
+		s = append(s, say("clock starts with", words))
+	}
+	if finite(f.ClockStartS) {
+		s = append(s, say("clock started", duration(*f.ClockStartS, nearest)))
+	}
+	if finite(f.ClockEndS) {
+		s = append(s, say("clock ended", duration(*f.ClockEndS, nearest)))
+	}
+	return strings.Join(s, "; ")
+}
+
+func joined(parts ...string) string {
+	var s []string
+	for _, p := range parts {
+		if strings.TrimSpace(p) != "" {
+			s = append(s, p)
+		}
+	}
+	return strings.Join(s, "; ")
+}
+
+func prefixed(before, s string) string {
+	if s == "" {
+		return ""
+	}
+	return before + s
+}
+
+func refs(rs []cell.Ref) string {
+	var s []string
+	for _, r := range rs {
+		if t := r.String(); t != "" {
+			s = append(s, t)
+		}
+	}
+	return strings.Join(s, ", ")
+}
+
+// predicted are the pictures and the table of steps of a prediction.
+func (x *sheet) predicted() {
+	d, h := x.doc, x.head
+	if x.p.History == nil || x.p.History.Recorded {
+		return
+	}
+	d.page()
+	d.heading(say("predicted title"), 0, 40)
+	d.text(say("predicted note"))
+	d.heading(say("course title"), 1, 95)
+	h.history(x.p, x.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 88))
+	d.y += 89
+	d.text(x.slowestSentence() + " " + x.errorSentence())
+	d.heading(say("slowest title"), 1, 30)
+	x.slowest()
+	if f, times := h.profile(x.p, x.decides, small, 84); f != nil {
+		d.heading(say("profile title"), 1, 80)
+		f.draw(d.canvas(d.left, d.y, frameWide, 66))
+		d.y += 67
+		d.text(x.profileSentence(times))
+	}
+	d.heading(say("sketch title"), 1, 58)
+	d.sketch(&x.p.Product, x.decides.place, x.decides.placeName, 48)
+	d.text(say("sketch sentence", x.p.Product.Shape.Name, x.sizes(), x.decides.placeName))
+}
+
+func (x *sheet) errorSentence() string {
+	return say("error sentence", x.head.errorWords(x.decides.history.ErrorK))
+}
+
+// slowest is the table of the steps with the coldest and the hottest place at the end of each, and how they move.
+func (x *sheet) slowest() {
+	h, p := x.head, x.p
+	var rows [][]string
+	s := &p.Samples
+	for _, sp := range p.History.Spans {
+		cold, hot := "", ""
+		if i := sampleAt(s.TimesS, sp.EndS); i >= 0 && i < len(s.Coldest) && i < len(s.Hottest) {
+			cold, hot = h.temperature(s.Coldest[i], down), h.temperature(s.Hottest[i], up)
+			if i < len(s.ColdestAt) && i < len(s.HottestAt) {
+				cold += ", " + placeWords(p.Product.Shape, s.ColdestAt[i])
+				hot += ", " + placeWords(p.Product.Shape, s.HottestAt[i])
+			}
+		}
+		name := sp.Step.Name
+		if sp.Step.Stage != nil && sp.Step.Stage.Name != name {
+			name += " (" + sp.Step.Stage.Name + ")"
+		}
+		rows = append(rows, []string{name, duration(sp.StartS, nearest), duration(sp.EndS, nearest), x.mediumAtEnd(&sp), cold, hot})
+	}
+	x.table([]col{{title: say("col step"), wide: 38, bold: true}, {title: say("col start"), wide: 20}, {title: say("col end"), wide: 20}, {title: say("col medium"), wide: 26},
+		{title: say("col coldest"), wide: 38}, {title: say("col hottest"), wide: 38}}, rows, small)
+	x.text(x.moves())
+}
+
+func (x *sheet) mediumAtEnd(sp *model.Span) string {
+	if x.p.History.MediumC == nil {
+		return ""
+	}
+	c := x.p.History.MediumC(sp.EndS)
+	if math.IsNaN(c) {
+		return say("no medium")
+	}
+	return x.head.stated(c)
+}
+
+// sampleAt is the sample at an instant; -1 if there is none.
+func sampleAt(times []float64, t float64) int {
+	for i, at := range times {
+		if math.Abs(at-t) < 1e-6*max(1, t) {
+			return i
+		}
+	}
+	return -1
+}
+
+// moves says in words how the coldest and the hottest place move.
+func (x *sheet) moves() string {
+	s, shape := &x.p.Samples, x.p.Product.Shape
+	if len(s.ColdestAt) == 0 || shape == model.Stirred {
+		return say("moves stirred")
+	}
+	var out []string
+	for _, sp := range x.p.History.Spans {
+		at, what := s.HottestAt, say("hottest")
+		if sp.Step.Stage != nil && sp.Step.Stage.Heats {
+			at, what = s.ColdestAt, say("coldest")
+		}
+		first, last := "", ""
+		for i, t := range s.TimesS {
+			if t > sp.StartS && t <= sp.EndS && i < len(at) {
+				if first == "" {
+					first = placeWords(shape, at[i])
+				}
+				last = placeWords(shape, at[i])
+			}
+		}
+		switch {
+		case first == "":
+		case first == last:
+			out = append(out, say("moves not", sp.Step.Name, what, first))
+		default:
+			out = append(out, say("moves", sp.Step.Name, what, first, last))
+		}
+	}
+	return say("moves sentence", strings.Join(out, "; "), x.decides.placeName)
+}
+
+// profileSentence gives surface and middle at each time of the profile.
+func (x *sheet) profileSentence(times []float64) string {
+	hist := x.decides.history
+	lo, hi, _ := depthAxis(&x.p.Product)
+	var s []string
+	for _, t := range times {
+		a, b, c := x.decides.place, x.decides.place, x.decides.place
+		a.UpM, b.UpM, c.UpM = lo, (lo+hi)/2, hi
+		if lo == 0 {
+			s = append(s, say("profile round", duration(t, nearest), x.head.temperature(hist.At(a, t), nearest), x.head.temperature(hist.At(c, t), nearest)))
+		} else {
+			s = append(s, say("profile flat", duration(t, nearest), x.head.temperature(hist.At(a, t), nearest), x.head.temperature(hist.At(b, t), nearest),
+				x.head.temperature(hist.At(c, t), nearest)))
+		}
+	}
+	return say("profile sentence", strings.Join(s, "; "))
+}
+
+// sizes says the sizes of the product that its shape uses.
+func (x *sheet) sizes() string {
+	z, p := x.p.Product.Size, x.p.Product.Shape
+	if p == nil {
+		return ""
+	}
+	var s []string
+	for _, need := range p.Needs {
+		switch need {
+		case "Thickness":
+			s = append(s, say("size thickness")+" "+mm(z.ThicknessM))
+		case "Width":
+			s = append(s, say("size width")+" "+mm(z.WidthM))
+		case "Length":
+			s = append(s, say("size length")+" "+mm(z.LengthM))
+		case "Diameter":
+			s = append(s, say("size diameter")+" "+mm(z.DiameterM))
+		case "Volume":
+			s = append(s, say("size volume", plain(z.VolumeM3*1000, 3, nearest)))
+		case "Surface area":
+			s = append(s, say("size area", plain(z.AreaM2, 4, nearest)))
+		}
+	}
+	return strings.Join(s, ", ")
+}
+
+// measured keeps what was measured apart from what was calculated.
+func (x *sheet) measured() {
+	d, p := x.doc, x.p
+	rec := p.History != nil && p.History.Recorded
+	if rec {
+		d.page()
+	}
+	d.heading(say("measured title"), 0, 60)
+	if !rec {
+		d.text(say("measured none"))
+		x.blankTable([]string{"blank date", "blank batch", "blank place", "blank start", "blank end", "blank logger", "blank initials"}, 4)
+		return
+	}
+	d.text(say("measured note"))
+	d.head.history(p, x.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 88))
+	d.y += 89
+	d.text(x.slowestSentence())
+}
+
+// blankTable is a form of n blank rows.
+func (x *sheet) blankTable(keys []string, n int) {
+	d := x.doc
+	w := frameWide / float64(len(keys))
+	const tall = 8.5
+	d.need(tall * float64(n+1))
+	for i, k := range keys {
+		at := d.left + w*float64(i)
+		for j, s := range wrap(say(k), w-2, small, true) {
+			d.put(at+1.2, d.y+3.4+float64(j)*3.9, s, small, true)
+		}
+		for r := 0; r <= n; r++ {
+			d.frame(at, d.y+float64(r)*tall, w, tall, 0.7)
+		}
+	}
+	d.y += tall*float64(n+1) + 3
+}

@@ -1,0 +1,122 @@
+package report
+
+import (
+	"io"
+	"strings"
+
+	"slowpoint/rules"
+)
+
+// WriteSummaryPDF writes the overview of a plan: one line a product, the tightest first. Thousands of rows are fine.
+func WriteSummaryPDF(w io.Writer, h *Head, rows []Row) error {
+	d := newDoc(h, say("summary title"))
+	d.summary(rows)
+	return d.finish(w)
+}
+
+// OnePDF writes the overview and every product in one document. each hands over the products one by one and stops at an error.
+func OnePDF(w io.Writer, h *Head, rows []Row, each func(func(*Product) error) error) error {
+	d := newDoc(h, say("summary title"))
+	d.summary(rows)
+	if err := each(func(p *Product) error {
+		d.product(p)
+		return d.pdf.Error()
+	}); err != nil {
+		return err
+	}
+	return d.finish(w)
+}
+
+// summary writes the pages of the overview.
+func (d *doc) summary(rows []Row) {
+	h := d.head
+	d.title = say("summary title")
+	d.page()
+	d.heading(say("summary title"), 0, 20)
+	var n [4]int
+	list := make([]slim, len(rows))
+	for i, r := range rows {
+		list[i] = slim{Row: r, calculated: true}
+		n[overall(r.Verdict)]++
+	}
+	list = listed(nil, list)
+	d.para(say("summary sentence", len(rows), n[rules.Met], n[rules.NotMet], n[rules.CannotTell], len(h.NotCalculated)), style{size: 11, bold: true, after: 2})
+	if len(h.NotCalculated) > 0 {
+		d.notCalculated()
+	}
+	d.heading(say("summary list"), 1, 25)
+	var cells [][]string
+	for i := range list {
+		r := &list[i]
+		f := &rules.Finding{MarginK: r.MarginK, MarginS: r.MarginS}
+		margin := h.room(f)
+		if margin == "" {
+			margin = r.Why
+		}
+		notes := ""
+		if r.Problems > 0 {
+			notes = plain(float64(r.Problems), 0, nearest)
+		}
+		cells = append(cells, []string{r.Product, r.Process, verdictWord(overall(r.Verdict)), margin, r.Deciding, notes, r.File})
+	}
+	if len(cells) == 0 {
+		d.text(say("summary none"))
+	} else {
+		d.table([]col{{title: say("col product"), wide: 36, bold: true}, {title: say("col process"), wide: 25}, {title: say("col verdict"), wide: 24, bold: true},
+			{title: say("col margin"), wide: 34}, {title: say("col deciding"), wide: 30}, {title: say("col notes"), wide: 11}, {title: say("col file"), wide: 20}}, cells, small)
+	}
+	d.plan()
+	d.noted()
+	d.heading(say("standing title"), 1, 30)
+	for _, s := range CautionText() {
+		d.item("•", s, body)
+	}
+}
+
+// notCalculated names the products that are missing in the list.
+func (d *doc) notCalculated() {
+	d.heading(say("summary not"), 1, 20)
+	d.text(say("summary not note"))
+	var rows [][]string
+	for _, n := range d.head.NotCalculated {
+		var why []string
+		for i, e := range n.Because {
+			if i == 3 {
+				break
+			}
+			why = append(why, e.Error())
+		}
+		rows = append(rows, []string{n.Product, n.At.String(), strings.Join(why, "\n")})
+	}
+	d.table([]col{{title: say("col product"), wide: 44, bold: true}, {title: say("col place"), wide: 28}, {title: say("col why"), wide: frameWide - 72}}, rows, small)
+}
+
+// plan says what was read and by which version.
+func (d *doc) plan() {
+	h := d.head
+	d.heading(say("plan title"), 1, 30)
+	var rows [][2]string
+	for _, it := range h.Items {
+		rows = append(rows, [2]string{it.Item, it.Value})
+	}
+	d.pairs(append(rows, [2]string{say("key file"), h.Plan}, [2]string{say("key digest"), h.SHA256}, [2]string{say("key version"), h.Version},
+		[2]string{say("key date"), h.day()}), 45)
+}
+
+// noted lists everything that was noted about the input, at most 200 lines.
+func (d *doc) noted() {
+	h := d.head
+	d.heading(say("summary problems"), 1, 20)
+	if len(h.Problems) == 0 {
+		d.text(say("summary no problem"))
+		return
+	}
+	ps := h.Problems
+	const most = 200
+	x := &sheet{doc: d}
+	x.problems(ps[:min(len(ps), most)])
+	if len(ps) > most {
+		d.text(say("summary more", len(ps)-most))
+	}
+}
+
