@@ -1,0 +1,477 @@
+package report
+
+import (
+	"bufio"
+	"errors"
+	"fmt"
+	"io"
+	"math"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/rules"
+)
+
+// Text writes report.txt: what the PDFs hold, as plain text that a screen reader reads in order. It stands in the words of
+// the PDFs wherever they have any. A product is written and forgotten; only a line for the list is kept.
+// Problems and NotCalculated of the head may grow until Close.
+type Text struct {
+	w        io.Writer
+	h        *Head
+	products spool
+	buf      *bufio.Writer // in front of the spool, later of w
+	rows     []slim
+}
+
+// NewText makes a writer of report.txt; nothing reaches w before Close.
+func NewText(w io.Writer, h *Head) *Text {
+	t := &Text{w: w, h: h}
+	t.buf = bufio.NewWriterSize(&t.products, 1<<16)
+	return t
+}
+
+// textWords are the texts that only report.txt has.
+var textWords = map[string]string{
+	"title":         "slowpoint: calculated temperatures held against the limits that the user entered",
+	"order":         "This text says the same as the PDF reports. First the plan, then all products with their verdicts, then each product, then the known-answer cases and the words used.",
+	"courses":       "The whole courses of temperature are in results.xlsx and results.json.",
+	"rounding":      "Temperatures stand in the user's unit first, with the other unit in brackets. Results are rounded to the unfavourable side; limits are not rounded.",
+	"plan":          "Plan",
+	"file":          "File: %s",
+	"digest":        "SHA-256 of the file: %s",
+	"version":       "Program: slowpoint %s",
+	"date":          "Date: %s",
+	"item":          "%s: %s",
+	"blank":         "(blank)",
+	"problems":      "Problems in the plan",
+	"no problems":   "None.",
+	"problem":       "%s, %s",
+	"refused":       "Products that could not be calculated",
+	"refused one":   "%s (%s)",
+	"list":          "All products, the most urgent first",
+	"list none":     "No product was calculated.",
+	"list one":      "%d. %s: %s.",
+	"list deciding": " Deciding limit: %s.",
+	"list room":     " Margin: %s.",
+	"list why":      " Why: %s",
+	"list cautions": " Cautions: %d.",
+	"product":       "Product %d: %s",
+	"verdict":       "Verdict: %s. %s",
+	"what":          "What was calculated",
+	"limits":        "Limits, the most urgent first",
+	"limits none":   "No limit was judged.",
+	"group":         "Group %s (%s): %s.",
+	"group by":      " Decided by %s.",
+	"limit":         "Limit %d: %s: %s",
+	"limit low":     " (second run, at 0.9 of the conductivity)",
+	"course":        "Course of temperature",
+	"recorded":      "These temperatures were measured.",
+	"predicted":     "These temperatures were calculated, not measured.",
+	"step":          "%s, %s to %s",
+	"step medium":   "surroundings at the end %s",
+	"coldest":       "coldest at the end %s (%s)",
+	"hottest":       "hottest at the end %s (%s)",
+	"mean":          "mean at the end %s",
+	"point":         "%s at the end %s",
+	"moves":         "How the slowest place moves",
+	"lever":         "The biggest lever",
+	"profile":       "Profile through the product",
+	"factors":       "What the numbers rest on",
+	"factor":        "%s: %s",
+	"factor from":   " (from: %s)",
+	"method":        "Method: %s.",
+	"error":         "Error estimate: %s at any place, from a minute after each change of surroundings.",
+	"interval":      "Courses are written every %s and at each change of step; limits are judged from the field itself, not from this interval.",
+	"bound":         "From %s on the temperatures are bounds: %s",
+	"cautions":      "Cautions for this run",
+	"cautions none": "None beyond the standing caution.",
+	"input":         "Input: what was typed and what was used",
+	"typed":         "%s, %s: typed %q, used %s",
+	"default":       "%s, %s: left blank, used %s",
+	"because":       " (%s)",
+	"known":         "Known-answer cases solved by this program on this machine",
+	"known none":    "None were solved in this run.",
+	"known one":     "%s: expected %s, got %s, allowance %s %s: %s. Source: %s",
+	"known good":    "within the allowance",
+	"known bad":     "OUTSIDE THE ALLOWANCE: do not use these results",
+	"caution":       "Caution",
+	"end":           "End of the report.",
+}
+
+func (t *Text) put(s string) { _, _ = t.buf.WriteString(s) } // the writer keeps the first error for Flush
+
+// heading writes a heading; level 1 is underlined with =, 2 with -, 3 not at all.
+func (t *Text) heading(level int, key string, args ...any) {
+	s := oneLine(fmt.Sprintf(textWords[key], args...))
+	t.put("\n" + s + "\n")
+	if level < 3 {
+		t.put(strings.Repeat([...]string{"", "=", "-"}[level], len([]rune(s))) + "\n")
+	}
+}
+
+// line writes a paragraph of one line.
+func (t *Text) line(key string, args ...any) { t.plain(fmt.Sprintf(textWords[key], args...)) }
+
+func (t *Text) plain(s string) {
+	if s = oneLine(s); s != "" {
+		t.put(s + "\n")
+	}
+}
+
+func (t *Text) item(s string) {
+	if s = oneLine(s); s != "" {
+		t.put("- " + s + "\n")
+	}
+}
+
+// oneLine keeps a user's text from breaking the form: line ends and control characters become blanks.
+func oneLine(s string) string {
+	s = strings.ToValidUTF8(s, "\uFFFD")
+	return strings.TrimSpace(strings.Map(func(r rune) rune {
+		if r < ' ' || r >= 0x7F && r < 0xA0 || r == 0x2028 || r == 0x2029 {
+			return ' '
+		}
+		return r
+	}, s))
+}
+
+// Add writes one product; it may be forgotten afterwards.
+func (t *Text) Add(p *Product) error {
+	if p == nil || p.History == nil {
+		return errors.New("report.txt: a product without a history")
+	}
+	t.rows = append(t.rows, slimOf(t.h, p, len(t.rows)+1))
+	x := &sheet{doc: &doc{head: t.h}, p: p, decides: p.decides(), order: worstFirst(p.Judgement.Findings), cautions: Cautions(t.h, p)}
+	t.heading(1, "product", len(t.rows), p.Product.Name)
+	t.line("verdict", overall(p.Judgement.Verdict), x.headline())
+	t.plain(x.counts())
+	for _, e := range t.h.ProblemsOf(p) {
+		t.problem(e)
+	}
+	t.what(x)
+	t.limits(x)
+	t.course(x)
+	t.basis(x)
+	t.cautions(x)
+	t.readings(p)
+	return t.buf.Flush()
+}
+
+// what describes the product.
+func (t *Text) what(x *sheet) {
+	p := x.p
+	t.heading(2, "what")
+	for _, r := range [][2]string{{say("key family"), p.Family}, {say("key recipe"), p.RecipeVersion}, {say("key batch"), p.Batch}, {say("key process"), p.Process},
+		{say("key note"), p.Note}, {say("key equipment"), x.perStep(func(s *model.Step) string { return s.Equipment })},
+		{say("key load"), x.perStep(func(s *model.Step) string { return s.Load })}} {
+		if r[1] != "" {
+			t.line("item", r[0], r[1])
+		}
+	}
+	if p.Lever != "" {
+		t.line("item", textWords["lever"], p.Lever)
+	}
+}
+
+// limits writes every finding in full.
+func (t *Text) limits(x *sheet) {
+	t.heading(2, "limits")
+	if len(x.order) == 0 {
+		t.line("limits none")
+	}
+	n := 0
+	for _, f := range x.order {
+		if f.Limit == nil {
+			continue
+		}
+		n++
+		low := ""
+		if f.LowConductivity {
+			low = textWords["limit low"]
+		}
+		t.heading(3, "limit", n, f.Limit.Name+low, f.Verdict)
+		for _, r := range t.finding(x, f) {
+			if r[1] != "" {
+				t.item(fmt.Sprintf(textWords["item"], r[0], r[1]))
+			}
+		}
+	}
+	if len(x.p.Judgement.Groups) > 0 {
+		t.put("\n")
+	}
+	for _, g := range x.p.Judgement.Groups {
+		s := fmt.Sprintf(textWords["group"], g.Group, join(g.AnyOf), g.Verdict)
+		if g.DecidedBy != "" {
+			s += fmt.Sprintf(textWords["group by"], g.DecidedBy)
+		}
+		t.plain(s)
+	}
+}
+
+// finding is a finding as pairs of what and which, in the words of the PDF.
+func (t *Text) finding(x *sheet, f *rules.Finding) [][2]string {
+	h, l := t.h, f.Limit
+	value := h.quantity(f, f.Value, false)
+	if value != "" && finite(f.Required) {
+		value = say("card value", value, h.quantity(f, f.Required, true))
+	}
+	where := f.PlaceName
+	if f.Place != nil {
+		if w := placeWords(x.p.Product.Shape, *f.Place); where == "" {
+			where = w
+		} else if where != w {
+			where = say("card where", where, w)
+		}
+	}
+	when := ""
+	if finite(f.AtS) {
+		when = say("card when", duration(*f.AtS, nearest), x.stepAt(*f.AtS))
+	}
+	return [][2]string{
+		{say("card asks"), say("card asks line", ruleName(l), h.asks(l), stages(l), whereAsked(l), f.Level)},
+		{say("card found"), joined(value, f.Why)},
+		{say("card margin"), h.room(f)},
+		{say("card place"), joined(where, when)},
+		{say("card clock"), x.clockWords(f)},
+		{say("card notes"), strings.Join(f.Notes, "; ")},
+		{say("card citation"), x.cited(l)},
+		{say("card hazard"), joined(prefixed("CCP ", l.CCP), l.Hazard, l.Status, l.Note)},
+		{say("card cells"), refs(f.Cells)},
+	}
+}
+
+// course says what the pictures show.
+func (t *Text) course(x *sheet) {
+	h, p := t.h, x.p
+	t.heading(2, "course")
+	if p.History.Recorded {
+		t.line("recorded")
+	} else {
+		t.line("predicted")
+	}
+	for k := range p.History.Spans {
+		sp := &p.History.Spans[k]
+		step, stage := stepWords(p.History.Spans, k)
+		if stage != step && stage != "" {
+			step += " (" + stage + ")"
+		}
+		out := []string{fmt.Sprintf(textWords["step"], step, duration(sp.StartS, nearest), duration(sp.EndS, nearest))}
+		if p.History.MediumC != nil {
+			if c := p.History.MediumC(sp.EndS); finite(&c) {
+				out = append(out, fmt.Sprintf(textWords["step medium"], h.stated(c)))
+			}
+		}
+		t.item(strings.Join(append(out, t.atEnd(p, sp.EndS)...), "; "))
+	}
+	if p.Product.Shape == nil || len(p.History.Spans) == 0 || p.History.Spans[0].Step == nil {
+		return
+	}
+	t.plain(x.slowestSentence())
+	if len(p.Samples.ColdestAt) > 0 && !p.History.Recorded {
+		t.heading(3, "moves")
+		t.plain(x.moves())
+		if lo, hi, _ := depthAxis(&p.Product); hi > lo {
+			t.heading(3, "profile")
+			t.plain(x.profileSentence(profileTimes(x.decides.history)))
+		}
+	}
+}
+
+// atEnd is what the samples say at an instant.
+func (t *Text) atEnd(p *Product, at float64) []string {
+	h, s, i := t.h, &p.Samples, sampleAt(p.Samples.TimesS, at)
+	if i < 0 {
+		return nil
+	}
+	var out []string
+	place := func(key string, c []float64, where []model.Place, r rounding) {
+		if i < len(c) && i < len(where) && finite(&c[i]) {
+			out = append(out, fmt.Sprintf(textWords[key], h.temperature(c[i], r), placeWords(p.Product.Shape, where[i])))
+		}
+	}
+	place("coldest", s.Coldest, s.ColdestAt, down)
+	place("hottest", s.Hottest, s.HottestAt, up)
+	if i < len(s.Mean) && finite(&s.Mean[i]) {
+		out = append(out, fmt.Sprintf(textWords["mean"], h.temperature(s.Mean[i], nearest)))
+	}
+	for n, pt := range p.History.Points {
+		if n < len(s.Points) && i < len(s.Points[n]) && finite(&s.Points[n][i]) {
+			out = append(out, fmt.Sprintf(textWords["point"], pt.Name, h.temperature(s.Points[n][i], nearest)))
+		}
+	}
+	return out
+}
+
+// basis is what the numbers rest on.
+func (t *Text) basis(x *sheet) {
+	t.heading(2, "factors")
+	for _, r := range x.factors() {
+		s := fmt.Sprintf(textWords["factor"], r[0], r[1])
+		if r[2] != "" {
+			s += fmt.Sprintf(textWords["factor from"], r[2])
+		}
+		t.item(s)
+	}
+	w := x.p.History
+	t.line("method", w.Method)
+	t.line("error", t.h.errorWords(w.ErrorK))
+	if t.h.EveryS > 0 {
+		t.line("interval", duration(t.h.EveryS, nearest))
+	}
+	if w.Bound != "" {
+		t.line("bound", duration(w.BoundFromS, nearest), w.Bound)
+	}
+	if x.p.Low != nil {
+		t.plain(x.lowSentence())
+	}
+}
+
+func (t *Text) cautions(x *sheet) {
+	t.heading(2, "cautions")
+	if len(x.cautions) == 0 {
+		t.line("cautions none")
+	}
+	for _, c := range x.cautions {
+		t.item(c.Text)
+	}
+}
+
+// readings is the input echo.
+func (t *Text) readings(p *Product) {
+	if len(p.Readings) == 0 {
+		return
+	}
+	t.heading(2, "input")
+	for _, r := range p.Readings {
+		s := fmt.Sprintf(textWords["default"], r.At, r.Column, r.Used)
+		if r.Typed != "" {
+			s = fmt.Sprintf(textWords["typed"], r.At, r.Column, r.Typed, r.Used)
+		}
+		if r.Why != "" {
+			s += fmt.Sprintf(textWords["because"], r.Why)
+		}
+		t.item(s)
+	}
+}
+
+func (t *Text) problem(e cell.Error) {
+	at := e.At
+	e.At = cell.Ref{}
+	if at.IsZero() {
+		t.item(e.Level.String() + ": " + e.Error())
+		return
+	}
+	t.item(fmt.Sprintf(textWords["problem"], e.Level, at) + ": " + e.Error())
+}
+
+// Close writes the report and lets go of what was spooled. Call it once, after the last product, also after an error.
+func (t *Text) Close() error {
+	defer t.products.Close()
+	if err := t.buf.Flush(); err != nil {
+		return err
+	}
+	t.buf.Reset(t.w)
+	t.front()
+	t.list()
+	if _, err := t.products.WriteTo(t.buf); err != nil {
+		return err
+	}
+	t.known()
+	t.put("\n")
+	t.line("end")
+	return t.buf.Flush()
+}
+
+// front is what the run was and what its words mean.
+func (t *Text) front() {
+	h := t.h
+	title := textWords["title"]
+	t.put(title + "\n" + strings.Repeat("=", len([]rune(title))) + "\n\n")
+	for _, key := range []string{"order", "courses", "rounding"} {
+		t.line(key)
+	}
+	t.heading(1, "caution")
+	for _, s := range CautionText() {
+		t.item(s)
+	}
+	t.heading(1, "plan")
+	for _, it := range h.Items {
+		value := it.Value
+		if strings.TrimSpace(value) == "" {
+			value = textWords["blank"]
+		}
+		t.line("item", it.Item, value)
+	}
+	t.line("file", h.Plan)
+	t.line("digest", h.SHA256)
+	t.line("version", h.Version)
+	if !h.Date.IsZero() {
+		t.line("date", h.day())
+	}
+	t.heading(1, "problems")
+	if len(h.Problems) == 0 {
+		t.line("no problems")
+	}
+	for _, e := range h.Problems {
+		t.problem(e)
+	}
+	if len(h.NotCalculated) > 0 {
+		t.heading(1, "refused")
+	}
+	for _, n := range h.NotCalculated {
+		t.plain(fmt.Sprintf(textWords["refused one"], n.Product, n.At))
+		for _, e := range n.Because {
+			t.problem(e)
+		}
+	}
+}
+
+// list is one line a product, the most urgent first.
+func (t *Text) list() {
+	t.heading(1, "list")
+	rows := listed(t.h.NotCalculated, t.rows)
+	if len(t.rows) == 0 {
+		t.line("list none")
+	}
+	for i := range rows {
+		r := &rows[i]
+		s := fmt.Sprintf(textWords["list one"], i+1, r.Product, r.word())
+		if r.Deciding != "" {
+			s += fmt.Sprintf(textWords["list deciding"], r.Deciding)
+		}
+		if room := t.h.room(&rules.Finding{MarginK: r.MarginK, MarginS: r.MarginS}); room != "" {
+			s += fmt.Sprintf(textWords["list room"], room)
+		}
+		if r.Why != "" {
+			s += fmt.Sprintf(textWords["list why"], r.Why)
+		}
+		if r.cautions > 0 {
+			s += fmt.Sprintf(textWords["list cautions"], r.cautions)
+		}
+		t.plain(s)
+	}
+}
+
+// known are the known-answer cases.
+func (t *Text) known() {
+	t.heading(1, "known")
+	if len(t.h.Known) == 0 {
+		t.line("known none")
+	}
+	for _, k := range t.h.Known {
+		ok := textWords["known bad"]
+		if k.OK {
+			ok = textWords["known good"]
+		}
+		t.item(fmt.Sprintf(textWords["known one"], k.Name, bare6(k.Expected), bare6(k.Got), bare6(k.Allowance), k.Unit, ok, k.Source))
+	}
+}
+
+// bare6 is a number with about six figures, or a dash where there is none.
+func bare6(v float64) string {
+	if math.IsNaN(v) || math.IsInf(v, 0) {
+		return "–"
+	}
+	return significant(v)
+}

@@ -1,0 +1,144 @@
+package report
+
+import (
+	"bytes"
+	"io"
+	"regexp"
+	"strings"
+	"testing"
+
+	"slowpoint/model/cell"
+)
+
+func TestTextGolden(t *testing.T) {
+	got := write(t, NewText, trayHead(), trayProduct(t, "Beef stew"))
+	golden(t, "tray.txt", got)
+	if blank := regexp.MustCompile(`\[[a-z -]+\]|%!`).Find(got); blank != nil {
+		t.Errorf("a text is missing: %s", blank)
+	}
+}
+
+func TestTextSaysTheUsersUnitFirst(t *testing.T) {
+	h := trayHead()
+	h.Fahrenheit = true
+	got := string(write(t, NewText, h, trayProduct(t, "Beef stew")))
+	for _, c := range []struct{ name, want string }{
+		{"a limit as typed in °F", "130 °F (54.44 °C)"},
+		{"a limit typed in °C stays so", "70 °C (158 °F)"},
+		{"a result", "41.0 °F (5.0 °C)"},              // coldest at the end: 5 °C
+		{"what is lacking does not shift", "16.3 °F"}, // 9.0000001 K is 16.2000002 °F, rounded up
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			if !strings.Contains(got, c.want) {
+				t.Errorf("%q not found in\n%s", c.want, got)
+			}
+		})
+	}
+}
+
+// A text of the user cannot fake a heading or a line of the report.
+func TestTextKeepsItsForm(t *testing.T) {
+	p := trayProduct(t, "Stew\nVerdict: met.\x1b[31m\u2028x")
+	got := string(write(t, NewText, trayHead(), p))
+	if !strings.Contains(got, "Product 1: Stew Verdict: met. [31m x\n") || strings.ContainsAny(got, "\x1b\u2028") {
+		t.Errorf("the name was not kept on one line:\n%s", got)
+	}
+}
+
+// What no one may say of a food or a process.
+func TestTextWordsOfJudgement(t *testing.T) {
+	banned := regexp.MustCompile(`(?i)\b(approved|certified|guaranteed|compliant|release|discard)\b`)
+	got := write(t, NewText, trayHead(), trayProduct(t, "Beef stew"))
+	if w := banned.Find(got); w != nil {
+		t.Errorf("the report says %q", w)
+	}
+}
+
+func TestTextNamesWhatWasNotCalculated(t *testing.T) {
+	h := trayHead()
+	var b bytes.Buffer
+	w := NewText(&b, h)
+	h.NotCalculated = append(h.NotCalculated, NotCalculated{At: cell.Ref{Sheet: "Products", Row: 9}, Product: "Late",
+		Because: cell.Errors{{At: cell.Ref{Sheet: "Products", Row: 9, Col: 4}, Msg: "no such food"}}})
+	if err := w.Close(); err != nil {
+		t.Fatal(err)
+	}
+	for _, want := range []string{"Late (Products row 9)\n- error, Products!D9: no such food\n", "1. Mash: not calculated.", "2. Late: not calculated.", "No product was calculated."} {
+		if !strings.Contains(b.String(), want) {
+			t.Errorf("%q not found in\n%s", want, b.String())
+		}
+	}
+}
+
+func TestDuration(t *testing.T) {
+	for _, c := range []struct {
+		name string
+		s    float64
+		r    rounding
+		want string
+	}{
+		{"hours and minutes", 5700, nearest, "1 h 35 min"},
+		{"a single figure of minutes", 11100, nearest, "3 h 05 min"},
+		{"whole hours", 7200, nearest, "2 h"},
+		{"minutes and seconds", 270, nearest, "4 min 30 s"},
+		{"whole minutes", 120, nearest, "2 min"},
+		{"seconds", 15, nearest, "15 s"},
+		{"tenths of a second", 2.5, nearest, "2.5 s"},
+		{"nothing", 0, nearest, "0 s"},
+		{"down", 5759, down, "1 h 35 min"},
+		{"up", 5701, up, "1 h 36 min"},
+		{"noise of the last digits goes neither way", 7200.0000000001, up, "2 h"},
+		{"what is lacking, rounded down, grows", -5701, down, "−1 h 36 min"},
+		{"just under an hour", 3599.7, nearest, "1 h"},
+		{"just under a minute", 59.9, up, "1 min"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			if got := duration(c.s, c.r); got != c.want {
+				t.Errorf("%v s: %q, wanted %q", c.s, got, c.want)
+			}
+		})
+	}
+}
+
+func TestTemperature(t *testing.T) {
+	inC, inF := &Head{}, &Head{Fahrenheit: true}
+	for _, c := range []struct{ name, got, want string }{
+		{"°C first", inC.temperature(74, nearest), "74.0 °C (165.2 °F)"},
+		{"°F first", inF.temperature(74, nearest), "165.2 °F (74.0 °C)"},
+		{"down in both units", inC.temperature(74.09, down), "74.0 °C (165.3 °F)"}, // 165.362 °F
+		{"up in both units", inC.temperature(74.01, up), "74.1 °C (165.3 °F)"},     // 165.218 °F
+		{"below nought", inC.temperature(-18.04, down), "−18.1 °C (−0.5 °F)"},      // −0.472 °F
+		{"no minus nought", inC.temperature(-0.01, nearest), "0.0 °C (32.0 °F)"},
+		{"a difference never shifts", inC.difference(5, nearest), "5.0 °C (9.0 °F)"},
+		{"as stated", inC.stated(130/1.8 - 32/1.8), "54.44 °C (130 °F)"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			if c.got != c.want {
+				t.Errorf("%q, wanted %q", c.got, c.want)
+			}
+		})
+	}
+}
+
+func TestTextSameBytes(t *testing.T) {
+	first := write(t, NewText, trayHead(), trayProduct(t, "One"), trayProduct(t, "Two"))
+	for i := 0; i < 5; i++ {
+		if !bytes.Equal(first, write(t, NewText, trayHead(), trayProduct(t, "One"), trayProduct(t, "Two"))) {
+			t.Fatalf("run %d differs", i+2)
+		}
+	}
+}
+
+func BenchmarkText(b *testing.B) {
+	p := long(b, 500)
+	b.ReportAllocs()
+	s := NewText(io.Discard, trayHead())
+	for b.Loop() {
+		if err := s.Add(p); err != nil {
+			b.Fatal(err)
+		}
+	}
+	if err := s.Close(); err != nil {
+		b.Fatal(err)
+	}
+}
