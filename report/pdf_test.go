@@ -1,0 +1,168 @@
+package report
+
+import (
+	"bytes"
+	"math"
+	"os"
+	"os/exec"
+	"strings"
+	"sync"
+	"testing"
+	"time"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/rules"
+)
+
+// roastHead is the head of an invented plan.
+func roastHead() *Head {
+	return &Head{
+		Version: "0.1.0", Date: time.Date(2026, 12, 1, 14, 5, 0, 0, time.UTC), Plan: "winter menu.xlsx",
+		SHA256: "9f2c4a7be0d15538c1a2b3c4d5e6f708192a3b4c5d6e7f8091a2b3c4d5e6f708", EveryS: 60, Paper: "A4", Products: 1,
+		Items: []Item{{cell.Ref{Sheet: "Plan", Row: 2, Col: 2}, "Site", "Example kitchen"}, {cell.Ref{Sheet: "Plan", Row: 3, Col: 2}, "Plan", "Winter menu"},
+			{cell.Ref{Sheet: "Plan", Row: 4, Col: 2}, "Edition", "3"}, {cell.Ref{Sheet: "Plan", Row: 5, Col: 2}, "Prepared by", "A. Example"},
+			{cell.Ref{Sheet: "Plan", Row: 6, Col: 2}, "Reviewed by", "B. Example"}, {cell.Ref{Sheet: "Plan", Row: 7, Col: 2}, "Authority", "the local authority"}},
+		Problems: cell.Errors{{At: cell.Ref{Sheet: "Limits", Row: 4, Col: 20}, Level: cell.Warning, Field: "Clause", Msg: "no clause is given", Hint: "type the clause as the code prints it"}},
+		Known: []KnownAnswer{{Name: "slab with a film coefficient", Source: "series solution, an invented citation", Expected: 61.2534, Got: 61.2533, Allowance: 0.01, Unit: "°C", OK: true},
+			{Name: "brick held at its surface", Source: "product of three series, an invented citation", Expected: 23.118, Got: 23.117, Allowance: 0.01, Unit: "°C", OK: true}},
+	}
+}
+
+// roast is an invented product, solved, with invented findings around the true temperatures.
+func roast(t testing.TB, shape *model.Shape, v rules.Verdict) *Product {
+	t.Helper()
+	oven := model.Step{Name: "Roast", Stage: model.Cook, DurationS: 5400, Equipment: "oven 2", Load: "12 pieces on two racks",
+		Exposure: model.Exposure{At: cell.Ref{Sheet: "Steps", Row: 2}, Surface: model.Film, Medium: model.Course{TimesS: []float64{0}, C: []float64{140}}, FilmW: ptr(22.)}}
+	rest := model.Step{Name: "Rest on the bench", Stage: model.Rest, DurationS: 900,
+		Exposure: model.Exposure{At: cell.Ref{Sheet: "Steps", Row: 3}, Surface: model.Film, Medium: model.Course{TimesS: []float64{0}, C: []float64{24}}, Measured: true, FilmW: ptr(8.)}}
+	chill := model.Step{Name: "Blast chill", Stage: model.Cool, DurationS: 9000, Equipment: "chiller 1",
+		Exposure: model.Exposure{At: cell.Ref{Sheet: "Steps", Row: 4}, Surface: model.Film, Medium: model.Course{TimesS: []float64{0}, C: []float64{1}}, Measured: true, FilmW: ptr(25.), AirMS: ptr(4.)}}
+	p := &Product{
+		Product: model.Product{At: cell.Ref{Sheet: "Products", Row: 2}, Name: "Pork loin, rolled", Shape: shape,
+			Size: model.Size{ThicknessM: 0.055, WidthM: 0.12, LengthM: 0.2, DiameterM: 0.09, VolumeM3: 0.02, AreaM2: 0.4}, StartC: 6,
+			Food: &model.Material{Name: "pork loin", Source: "an invented source", Composed: true, Composition: "water 72 %, protein 21 %, fat 6 %, ash 1 %",
+				Props: func(float64) model.Properties { return model.Properties{KWmK: 0.47, RhoKgM3: 1060, CJkgK: 3520} }},
+			Points: []model.Point{{Name: "probe", Place: model.Place{UpM: 0.01}}}},
+		Steps: []model.Step{oven, rest, chill}, Family: "roasts", RecipeVersion: "v2", Batch: "B17", Process: "Roast and chill", Note: "netted",
+		Readings: []cell.Reading{{At: cell.Ref{Sheet: "Products", Row: 2, Col: 6}, Column: "Thickness", Typed: "55 mm", Used: "0.055 m"},
+			{At: cell.Ref{Sheet: "Products", Row: 2, Col: 9}, Column: "Start temperature", Typed: "6 °C", Used: "6 °C"},
+			{At: cell.Ref{Sheet: "Steps", Row: 2, Col: 9}, Column: "Temperature is", Used: "set-point", Why: "a blank stands for set-point, the less favourable word"}},
+	}
+	var err error
+	if p.History, err = model.Solve(p.Product, p.Steps, model.Options{}); err != nil {
+		t.Fatal(err)
+	}
+	if p.Low, err = model.Solve(p.Product, p.Steps, model.Options{ConductivityFactor: 0.9}); err != nil {
+		t.Fatal(err)
+	}
+	p.Samples = p.History.Sample(60)
+	p.Judgement = roastJudgement(p, v)
+	return p
+}
+
+func roastJudgement(p *Product, v rules.Verdict) rules.Judgement {
+	end := p.History.EndS()
+	core := &rules.Limit{At: cell.Ref{Sheet: "Limits", Row: 2}, Name: "Core reached", Kind: &rules.Kind{Name: "hold", Unit: "min"}, Stages: []*model.Stage{model.Cook, model.Rest},
+		FromC: ptr(70.), TimeS: ptr(120.), Counting: rules.Continuous, Code: "An invented code", Clause: "2-10", Edition: "2020", ConfirmedBy: "A. Example", ConfirmedOn: "2026-01-05",
+		CCP: "1", Hazard: "Salmonella", Status: "law", Typed: map[string]string{"From": "70 °C", "Time": "2 min"}}
+	first := &rules.Limit{At: cell.Ref{Sheet: "Limits", Row: 3}, Name: "Chill, first part", Kind: &rules.Kind{Name: "cool", Unit: "min"}, Stages: []*model.Stage{model.Cool},
+		FromC: ptr(135/1.8 - 32/1.8), ToC: ptr(70/1.8 - 32/1.8), TimeS: ptr(7200.), Clock: rules.Clock{Crossing: true}, Code: "An invented code", Clause: "3-501", Edition: "2022",
+		Typed: map[string]string{"From": "135 °F", "To": "70 °F", "Time": "120 min"}}
+	second := &rules.Limit{At: cell.Ref{Sheet: "Limits", Row: 4}, Name: "Chill to store", Kind: &rules.Kind{Name: "by the end"}, Stages: []*model.Stage{model.Cool},
+		ToC: ptr(5.), Code: "An invented code", Typed: map[string]string{"To": "5 °C"}}
+	lid := &rules.Limit{At: cell.Ref{Sheet: "Limits", Row: 5}, Name: "Hot holding", Kind: &rules.Kind{Name: "stay above"}, Stages: []*model.Stage{model.HoldHot}, FromC: ptr(63.), Code: "An invented code", Clause: "1", Edition: "1"}
+	hot := p.History.At(model.Place{}, end)
+	value := p.History.At(model.Place{}, 6300)
+	return rules.Judgement{Verdict: v, Findings: []rules.Finding{
+		{Limit: core, Level: "must", Verdict: rules.Met, Value: ptr(14.0987654), Required: ptr(2.), Unit: "min", MarginK: ptr(value - 70), MarginS: ptr(725.92592),
+			AtS: ptr(5600.), Place: &model.Place{}, PlaceName: "centre", ClockStartS: ptr(5200.), ClockEndS: ptr(6260.), Cells: []cell.Ref{core.At, {Sheet: "Steps", Row: 2}}, Why: "The place is held for 14 min."},
+		{Limit: first, Level: "must", Verdict: rules.Met, Value: ptr(101.26), Required: ptr(120.), Unit: "min", MarginK: ptr(3.1), MarginS: ptr(18.7 * 60),
+			AtS: ptr(12000.), Place: &model.Place{}, PlaceName: "centre", ClockStartS: ptr(6800.), ClockEndS: ptr(12000.), Cells: []cell.Ref{first.At}, Why: "The place falls to 70 °F in 101 min.",
+			Cautions: []string{"lethality without floor"}},
+		{Limit: second, Level: "must", Verdict: v, Value: &hot, Required: ptr(5.), Unit: "°C", MarginK: ptr(5 - hot), AtS: ptr(end), Place: &model.Place{}, PlaceName: "centre", Cells: []cell.Ref{second.At}, Why: "The stage ends too early.",
+			Notes: []string{"rose above From again at 1 h 05 min"}, LowConductivity: v == rules.NotMet},
+		{Limit: lid, Level: "must", Verdict: rules.NotApplicable, Why: "The process has no stage hold hot."},
+	}, Groups: []rules.GroupFinding{{Group: "Chilling", AnyOf: true, Verdict: v, DecidedBy: "Chill to store"}}}
+}
+
+func productPDF(t testing.TB, h *Head, p *Product) []byte {
+	t.Helper()
+	var b bytes.Buffer
+	if err := WriteProductPDF(&b, h, p); err != nil {
+		t.Fatal(err)
+	}
+	if dir := os.Getenv("SLOWPOINT_PDF"); dir != "" { // to look at what the tests made
+		if err := os.WriteFile(dir+"/"+strings.ReplaceAll(t.Name(), "/", "_")+".pdf", b.Bytes(), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+	return b.Bytes()
+}
+
+// pdfText gives the text of a PDF, with runs of blanks made one.
+func pdfText(t *testing.T, pdf []byte) string {
+	t.Helper()
+	tool, err := exec.LookPath("pdftotext")
+	if err != nil {
+		if os.Getenv("CI") != "" {
+			t.Fatal("pdftotext is missing")
+		}
+		t.Skip("pdftotext is missing")
+	}
+	cmd := exec.Command(tool, "-layout", "-", "-")
+	cmd.Stdin = bytes.NewReader(pdf)
+	out, err := cmd.Output()
+	if err != nil {
+		t.Fatal(err)
+	}
+	return strings.Join(strings.Fields(string(out)), " ")
+}
+
+func TestProductPDF(t *testing.T) {
+	for _, c := range []struct {
+		name    string
+		shape   *model.Shape
+		verdict rules.Verdict
+		change  func(*Head, *Product)
+		want    []string
+	}{
+		{"slab met", model.Slab, rules.Met, nil, []string{"✓ MET", "Pork loin, rolled", "at or above 70 °C (158 °F) for 2 min", "135 °F (57.22 °C)", "Missing citation", "no Clause, Edition", "winter menu.xlsx",
+			"Predicted (calculated", "Measured (the user's own record)", "No measured record was given", "Deviation record", "page 1 of", "61.2534 °C", "Person responsible", "slowest place"}},
+		{"brick not met", model.Brick, rules.NotMet, nil, []string{"✗ NOT MET", "lacking", "is not met in the calculation", "0.9 times the conductivity"}},
+		{"sphere cannot tell", model.Sphere, rules.CannotTell, nil, []string{"? CANNOT TELL", "cannot be told"}},
+		{"short cylinder letter", model.ShortCylinder, rules.Met, func(h *Head, p *Product) { h.Paper, h.Fahrenheit = "Letter", true }, []string{"42.8 °F (6 °C)", "temperature, °F"}},
+		{"cylinder", model.Cylinder, rules.NotMet, nil, []string{"diameter 90 mm"}},
+		{"bar", model.Bar, rules.NotMet, nil, []string{"thickness 55 mm, width 120 mm"}},
+		{"stirred", model.Stirred, rules.Met, nil, []string{"volume 20 L", "the same temperature"}},
+		{"accents, emoji and Chinese", model.Slab, rules.Met, func(h *Head, p *Product) {
+			p.Product.Name = "Crème brûlée Żurek Щи Σούπα 🍗 红烧肉\u0007"
+		}, []string{"Crème brûlée Żurek Щи Σούπα", "U+1F357", "U+70E7", "U+7EA2", "U+8089"}},
+		{"no limits", model.Slab, rules.CannotTell, func(h *Head, p *Product) { p.Judgement = rules.Judgement{Why: "no limit judged"} }, []string{"no limit judged"}},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			h, p := roastHead(), roast(t, c.shape, c.verdict)
+			if c.change != nil {
+				c.change(h, p)
+			}
+			pdf := productPDF(t, h, p)
+			if !bytes.Equal(pdf, productPDF(t, h, p)) {
+				t.Error("the same input gives other bytes")
+			}
+			text := pdfText(t, pdf)
+			for _, w := range append(c.want, "Not for canning") {
+				if !strings.Contains(text, w) {
+					t.Errorf("%q is missing", w)
+				}
+			}
+			for _, w := range []string{"%!", "[caution", "NaN", "Inf"} {
+				if strings.Contains(text, w) {
+					t.Errorf("%q is printed", w)
+				}
+			}
+		})
+	}
+}
+
+var _ = math.Pi
+var _ sync.Mutex
