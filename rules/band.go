@@ -1,5 +1,39 @@
 package rules
 
+import "strconv"
+
 // Band is the time spent between two temperatures.
-var Band = &Kind{Name: "band", Unit: "min", Needs: [][]string{{"From"}, {"To"}, {"Time"}, {"Counting"}}, May: []string{"Stage", "Where", "Compare time"},
-	Help: "time strictly between From and To is at most Time, over the stages or the whole chain"}
+var Band = &Kind{Name: "band", Unit: "min", Needs: [][]string{{"From"}, {"To"}, {"Time"}, {"Counting"}},
+	May:  []string{"Stage", "Where", "Compare time"},
+	Help: "time strictly between From and To is at most Time, over the stages or the whole chain", judge: judgeBand}
+
+func judgeBand(v *view) Finding {
+	l := v.l
+	q := question{unit: "min", need: *l.TimeS / 60}
+	q.measure = func(p path, t tilt) outcome {
+		sp := p.stay(v.stages, between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK))
+		return v.exposed(sp, l.Counting, "band")
+	}
+	return v.judgePlaces(q)
+}
+
+// exposed judges a time that is allowed at most.
+func (v *view) exposed(sp spent, c Counting, word string) outcome {
+	l := v.l
+	was := sp.counted(c)
+	o := none(NotMet, word)
+	o.value, o.bad, o.margin = was.s/60, was.s/60, *l.TimeS-was.s
+	o.holes = holes{"value": lasting(was.s, 1)}
+	o.start, o.end, o.at = when(was, sp.count)
+	switch {
+	case c == Once && sp.count > 1:
+		o.word, o.bad = map[string]string{"band": "band again"}[word], 1e5+was.s/60
+		if o.word == "" {
+			o.word = "out again"
+		}
+		o.holes["count"] = strconv.Itoa(sp.count)
+	case l.within(was.s, *l.TimeS):
+		o.verdict = Met
+	}
+	return o
+}

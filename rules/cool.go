@@ -1,5 +1,199 @@
 package rules
 
+import "math"
+
 // CoolWithin is a cooling window: from the clock to To within Time.
-var CoolWithin = &Kind{Name: "cool", Unit: "min", Needs: [][]string{{"To"}, {"Time"}, {"Clock starts"}}, May: []string{"From", "Stage", "Where", "Compare", "Compare time"},
-	Help: "from the clock down to To, and staying there, within Time"}
+var CoolWithin = &Kind{Name: "cool", Unit: "min", Needs: [][]string{{"To"}, {"Time"}, {"Clock starts"}},
+	May:  []string{"From", "Stage", "Where", "Compare", "Compare time"},
+	Help: "from the clock down to To, and staying there, within Time", judge: judgeCool}
+
+func judgeCool(v *view) Finding {
+	l := v.l
+	ws := v.windows()
+	q := question{unit: "min", need: *l.TimeS / 60}
+	q.measure = func(p path, t tilt) outcome {
+		worst := none(NotApplicable, "cool nowhere")
+		worst.bad = math.Inf(-1)
+		for _, w := range ws {
+			if o := v.coolWindow(p, w, t); worse(o, worst) {
+				worst = o
+			}
+		}
+		return worst
+	}
+	q.room = func(p path) float64 {
+		least := math.NaN()
+		for _, w := range ws {
+			if r := v.coolRoom(p, w); !(r >= least) {
+				least = r
+			}
+		}
+		return least
+	}
+	return v.judgePlaces(q)
+}
+
+// clockStart finds when the clock of a window starts for a place by a fall: at its first fall to the crossing temperature after
+// its highest temperature. ok is false where the window does not count; open tells that the fall is still to come when the
+// chain ends in the cold. errK starts it earlier.
+func (v *view) clockStart(p path, w window, errK float64) (start float64, ok, open bool) {
+	if !math.IsNaN(w.clock) {
+		return w.clock, true, false
+	}
+	from := v.l.crossedC()
+	q := p.in(w.interval)
+	top := 0
+	for i := range q.c {
+		if q.c[i] > q.c[top] {
+			top = i
+		}
+	}
+	if q.c[top] <= from+sameK {
+		return 0, false, false
+	}
+	level := from + errK
+	if q.c[top] <= level {
+		return q.t[top], true, false
+	}
+	for i := top; i+1 < len(q.c); i++ {
+		if q.c[i] > level && q.c[i+1] <= level {
+			return q.cross(i, level), true, false
+		}
+	}
+	return 0, false, w.last && v.endsCold(w)
+}
+
+// crossedC is the temperature whose crossing starts the clock, °C.
+func (l *Limit) crossedC() float64 {
+	if l.Clock.AtC != nil {
+		return *l.Clock.AtC
+	}
+	return *l.FromC
+}
+
+// endsCold tells whether a window has a stage that chills.
+func (v *view) endsCold(w window) bool {
+	for _, r := range v.runs {
+		if chills(r.stage) && r.a >= w.a && r.a < w.b {
+			return true
+		}
+	}
+	return false
+}
+
+// coolWindow judges one window at one place.
+func (v *view) coolWindow(p path, w window, t tilt) outcome {
+	l := v.l
+	start, ok, open := v.clockStart(p, w, t.errK)
+	if open {
+		o := none(CannotTell, "cool not fallen")
+		o.holes = holes{"start": l.startWords()}
+		return o
+	}
+	if !ok {
+		o := none(NotApplicable, "cool nowhere")
+		o.bad = math.Inf(-1)
+		return o
+	}
+	cold := l.coldSide(*l.ToC - t.errK - t.ownK)
+	q := p.in(w.interval)
+	last := len(q.c) - 1
+	o := none(NotMet, "cool late")
+	o.start, o.slow = start, true
+	if !cold.holds(q.c[last]) { // never down for good within the window
+		return v.coolOpen(o, w, w.b-start)
+	}
+	i := last
+	for i >= 0 && cold.holds(q.c[i]) {
+		i--
+	}
+	end := w.a
+	if i >= 0 {
+		end = q.cross(i, cold.hi)
+	}
+	took := math.Max(0, end-start)
+	o.end, o.at = math.Max(end, start), math.Max(end, start)
+	o.value, o.bad, o.margin = took/60, took/60, *l.TimeS-took
+	o.holes = holes{"value": lasting(took, 1), "start": l.startWords()}
+	o.word = "cool closed"
+	if took == 0 {
+		o.word = "cool at once"
+	}
+	switch {
+	case end > w.stageTo+sameS:
+		o.word = "cool stage"
+		o.holes["stage"] = v.stageNames()
+	case l.within(took, *l.TimeS):
+		o.verdict = Met
+	}
+	if t == (tilt{}) {
+		v.rises(&o, q, start, end)
+	}
+	return o
+}
+
+// coolOpen judges a window that ends before the place is down for good.
+func (v *view) coolOpen(o outcome, w window, ran float64) outcome {
+	l := v.l
+	o.value, o.bad, o.margin, o.at = ran/60, ran/60, *l.TimeS-ran, w.b
+	o.holes = holes{"value": lasting(ran, 1), "start": l.startWords(), "stage": v.stageNames()}
+	switch {
+	case !l.within(ran, *l.TimeS):
+		o.holes["value"] = lasting(ran, -1)
+	case w.b > w.stageTo+sameS:
+		o.word = "cool stage"
+	default:
+		o.verdict, o.word, o.margin = CannotTell, "cool open", math.NaN()
+		if !w.last {
+			o.word = "cool cut"
+		}
+	}
+	return o
+}
+
+// rises notes a return above the crossed temperature after the clock started, or above To on the way.
+func (v *view) rises(o *outcome, q path, start, end float64) {
+	if !math.IsNaN(start) && v.l.Clock.Crossing {
+		for i := 0; i+1 < len(q.t); i++ {
+			if from := v.l.crossedC(); q.t[i] > start+sameS && q.c[i] <= from && q.c[i+1] > from+0.05 {
+				o.notes = append(o.notes, say("note again", holes{"temp": v.l.startWords(), "when": clockTime(q.cross(i, from))}))
+				return
+			}
+		}
+	}
+	for i := 0; i+1 < len(q.t); i++ {
+		if to := *v.l.ToC; q.t[i] > start && q.c[i] <= to && q.c[i+1] > to && q.t[i] < end {
+			o.notes = append(o.notes, say("note again", holes{"temp": v.l.figure("To", exactly(to, "°C")), "when": clockTime(q.cross(i, to))}))
+			return
+		}
+	}
+}
+
+// stageNames are the stages of the limit in words.
+func (v *view) stageNames() string {
+	s := ""
+	for i, st := range v.l.Stages {
+		if i > 0 {
+			s += " + "
+		}
+		s += st.Name
+	}
+	return s
+}
+
+// coolRoom is how far To could be lowered in one window, K: To less the highest temperature from the allowed time on.
+func (v *view) coolRoom(p path, w window) float64 {
+	start, ok, _ := v.clockStart(p, w, 0)
+	if !ok {
+		return math.NaN()
+	}
+	due := math.Min(start+*v.l.TimeS, math.Min(w.b, w.stageTo))
+	q := p.in(w.interval)
+	top := p.value(due)
+	for i, t := range q.t {
+		if t > due {
+			top = math.Max(top, q.c[i])
+		}
+	}
+	return *v.l.ToC - top
+}

@@ -1,5 +1,114 @@
 package rules
 
+import "math"
+
 // HeatWithin is a heating window: from the clock up to To within Time.
-var HeatWithin = &Kind{Name: "heat", Unit: "min", Needs: [][]string{{"To"}, {"Time"}, {"Clock starts"}}, May: []string{"From", "Second time", "Stage", "Where", "Compare", "Compare time"},
-	Help: "reaches To (and stays Second time) within Time of the clock"}
+var HeatWithin = &Kind{Name: "heat", Unit: "min", Needs: [][]string{{"To"}, {"Time"}, {"Clock starts"}},
+	May:  []string{"From", "Second time", "Stage", "Where", "Compare", "Compare time"},
+	Help: "reaches To (and stays Second time) within Time of the clock", judge: judgeHeat}
+
+func judgeHeat(v *view) Finding {
+	ws := v.windows()
+	q := question{unit: "min", need: *v.l.TimeS / 60, warm: true}
+	q.measure = func(p path, t tilt) outcome {
+		worst := none(NotApplicable, "heat nowhere")
+		worst.bad = math.Inf(-1)
+		for _, w := range ws {
+			if o := v.heatWindow(p, w, t); worse(o, worst) {
+				worst = o
+			}
+		}
+		return worst
+	}
+	return v.judgePlaces(q)
+}
+
+// heatStart is when the clock of a window starts for a place: with the stage, or when it first is at the crossing temperature.
+func (v *view) heatStart(q path, w window, errK float64) (float64, bool) {
+	if !math.IsNaN(w.clock) {
+		return w.clock, true
+	}
+	from := v.l.crossedC() - errK
+	for i := range q.c {
+		if q.c[i] >= from-sameK {
+			if i == 0 {
+				return q.t[0], true
+			}
+			return q.cross(i-1, from), true
+		}
+	}
+	return 0, false
+}
+
+// heatWindow judges one window at one place.
+func (v *view) heatWindow(p path, w window, t tilt) outcome {
+	l := v.l
+	q := p.in(w.interval)
+	start, ok := v.heatStart(q, w, t.errK)
+	if !ok {
+		o := none(NotApplicable, "heat nowhere")
+		o.bad = math.Inf(-1)
+		return o
+	}
+	second := 0.0
+	if l.SecondS != nil {
+		second = *l.SecondS
+	}
+	o := none(NotMet, "heat late")
+	o.start, o.slow = start, true
+	done, reached := q.reach(l.warmSide(*l.ToC+t.errK+t.ownK), start, second)
+	if !reached {
+		ran := w.b - start
+		o.value, o.bad, o.margin, o.at = ran/60, ran/60, *l.TimeS-ran, w.b
+		o.holes = holes{"value": lasting(ran, -1), "stage": v.stageNames()}
+		switch {
+		case !l.within(ran, *l.TimeS):
+		case w.b > w.stageTo+sameS:
+			o.word = "heat stage"
+		default:
+			o.verdict, o.word, o.margin = CannotTell, "heat open", math.NaN()
+		}
+		return o
+	}
+	took := done - start
+	o.end, o.at, o.value, o.bad, o.margin = done, done, took/60, took/60, *l.TimeS-took
+	o.holes = holes{"value": lasting(took, 1), "stage": v.stageNames()}
+	o.word = "heat closed"
+	switch {
+	case done > w.stageTo+sameS:
+		o.word = "heat stage"
+	case l.within(took, *l.TimeS):
+		o.verdict = Met
+	}
+	return o
+}
+
+// reach finds when a path has, after start, been in a region for s seconds in a row.
+func (p path) reach(r region, start, s float64) (float64, bool) {
+	on, from := false, 0.0
+	for i := range p.t {
+		if p.t[i] < start-sameS {
+			continue
+		}
+		if !r.holds(p.c[i]) {
+			on = false
+			continue
+		}
+		if !on {
+			on, from = true, p.t[i]
+			if i > 0 && !r.holds(p.c[i-1]) && p.t[i] > p.t[i-1] {
+				from = math.Max(start, p.cross(i-1, r.edge(p.c[i-1])))
+			} else if i > 0 && r.holds(p.c[i-1]) {
+				from = math.Min(p.t[i], math.Max(start, p.t[i-1]))
+			}
+		}
+		until := p.t[i] // how long it certainly lasts: to where it leaves the region after this knot
+		if i+1 < len(p.t) && !r.holds(p.c[i+1]) {
+			until = p.cross(i, r.edge(p.c[i+1]))
+		}
+		if until-from >= s-sameS {
+			return from + s, true
+		}
+	}
+	return 0, false
+}

@@ -7,7 +7,81 @@ func same(a, b string) bool { return strings.EqualFold(strings.TrimSpace(a), str
 
 // Judge holds a subject against the limits that apply to it, in the order given.
 func Judge(limits []Limit, groups []Group, s Subject) Judgement {
-	return Judgement{Why: "no limit judged"}
+	var j Judgement
+	usual := newCourses(s.History)
+	var low *courses
+	if s.Low != nil {
+		low = newCourses(s.Low)
+	}
+	for i := range limits {
+		l := &limits[i]
+		if !l.Applies.to(s) {
+			continue
+		}
+		f := judgeOne(l, usual)
+		if low != nil {
+			if g := judgeOne(l, low); lessFavourable(g, f) {
+				f = g
+				f.LowConductivity = true
+			}
+		}
+		j.Findings = append(j.Findings, f)
+	}
+	j.join(groups)
+	j.conclude()
+	return j
 }
 
-type view struct{}
+// to tells whether a limit is for a subject.
+func (a Applies) to(s Subject) bool {
+	switch {
+	case a.All:
+		return true
+	case a.Product != "":
+		return same(a.Product, s.Product)
+	}
+	return a.Family != "" && same(a.Family, s.Family)
+}
+
+// judgeOne judges one limit on one history.
+func judgeOne(l *Limit, c *courses) Finding {
+	v := newView(l, c)
+	if fs := l.Faults(); len(fs) > 0 {
+		return v.blank(CannotTell, say("faulty", holes{"fault": fs[0].Msg}))
+	}
+	if s := v.lacks(); s != nil {
+		if l.Applies.All {
+			return v.blank(NotApplicable, say("stage lacking", holes{"stage": s.Name}))
+		}
+		return v.blank(CannotTell, say("stage lacking own", holes{"stage": s.Name}))
+	}
+	return l.Kind.judge(v)
+}
+
+// lessFavourable tells whether a is worse than b: by verdict, then by margin.
+func lessFavourable(a, b Finding) bool {
+	if a.Verdict != b.Verdict {
+		return rank(a.Verdict) > rank(b.Verdict)
+	}
+	switch {
+	case a.MarginS != nil && b.MarginS != nil:
+		return *a.MarginS < *b.MarginS
+	case a.MarginK != nil && b.MarginK != nil:
+		return *a.MarginK < *b.MarginK
+	}
+	return false
+}
+
+// conclude finds the verdict of the product from what weighs: its must findings that are applicable.
+func (j *Judgement) conclude() {
+	j.Verdict, j.Why = CannotTell, say("no limit judged", nil)
+	worst := NotApplicable
+	for _, f := range j.Findings {
+		if f.Level == "must" && rank(f.Verdict) > rank(worst) {
+			worst = f.Verdict
+		}
+	}
+	if worst != NotApplicable {
+		j.Verdict, j.Why = worst, ""
+	}
+}

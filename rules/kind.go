@@ -64,6 +64,7 @@ func (l *Limit) Faults() []Fault {
 	case k == HeatWithin && l.FromC != nil && l.ToC != nil && !(*l.ToC > *l.FromC):
 		add("To", "To must be warmer than From: the food is heated from From up to To", "swap From and To")
 	}
+	l.operatorFaults(add)
 	if k == CoolWithin || k == HeatWithin || k == ByTheEnd {
 		l.clockFaults(add)
 	}
@@ -79,20 +80,40 @@ func (l *Limit) Faults() []Fault {
 	return fs
 }
 
+// operatorFaults checks that the operators point the way the kind does.
+func (l *Limit) operatorFaults(add func(column, msg, hint string)) {
+	k := l.Kind
+	needed := k == Hold || k == HoldTable || k == Lethality || k == FreezeHold || k == Humidity
+	allowed := k == CoolWithin || k == HeatWithin || k == Band || k == StayAbove || k == StayBelow || k == Delay
+	up, down := l.CompareTime == AtLeast || l.CompareTime == MoreThan, l.CompareTime == AtMost || l.CompareTime == LessThan
+	if needed && down || allowed && up {
+		add("Compare time", "the operator points the other way than "+k.Name+" does",
+			"write "+map[bool]string{true: "at least or more than", false: "at most or less than"}[needed]+", or leave it blank")
+	}
+	warm := (k == Hold || k == ByTheEnd) && l.ToC == nil || k == StayAbove || k == HoldTable || k == HeatWithin || k == Humidity
+	cold := (k == Hold || k == ByTheEnd) && l.ToC != nil || k == StayBelow || k == CoolWithin || k == FreezeHold
+	up, down = l.Compare == AtLeast || l.Compare == MoreThan, l.Compare == AtMost || l.Compare == LessThan
+	if warm && down || cold && up {
+		add("Compare", "the operator points the other way than "+k.Name+" does",
+			"write "+map[bool]string{true: "at least or more than", false: "at most or less than"}[warm]+", or leave it blank")
+	}
+}
+
 // clockFaults checks Clock starts against From and Time.
 func (l *Limit) clockFaults(add func(column, msg, hint string)) {
 	c := l.Clock
 	event := c.Start != nil || c.End != nil
+	if set := event || c.Crossing || c.AtC != nil; l.Kind == ByTheEnd && set != (l.TimeS != nil) {
+		add("Clock starts", "by the end takes Time and Clock starts together, or neither", "fill both, or clear both for the end of the stage")
+	}
 	switch {
-	case l.Kind == ByTheEnd:
-		if set := event || c.Crossing || c.AtC != nil; set != (l.TimeS != nil) {
-			add("Clock starts", "by the end takes Time and Clock starts together, or neither", "fill both, or clear both for the end of the stage")
-		}
+	case l.Kind == ByTheEnd && c.Crossing && c.AtC == nil:
+		add("Clock starts", "the crossing needs its temperature here, because From and To say what must be reached", "write crossing of 60 °C")
 	case c.Crossing && c.AtC == nil && l.FromC == nil:
 		add("From", "a clock that starts at the crossing needs From, the temperature that is crossed", "fill From, or write crossing of 60 °C")
-	case event && l.FromC != nil:
+	case event && l.FromC != nil && l.Kind != ByTheEnd:
 		add("From", "the clock starts with a stage, so From is not used", "clear From, or write crossing in Clock starts")
-	case c.AtC != nil && l.FromC != nil && *c.AtC != *l.FromC:
+	case c.AtC != nil && l.FromC != nil && *c.AtC != *l.FromC && l.Kind != ByTheEnd:
 		add("From", "Clock starts names the temperature that is crossed, and From names another", "clear From")
 	}
 }

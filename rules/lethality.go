@@ -1,5 +1,271 @@
 package rules
 
-// Lethality is the integral of the lethal rate over one heating.
-var Lethality = &Kind{Name: "lethality", Unit: "", Needs: [][]string{{"Reference temperature"}, {"z"}, {"Time", "D"}, {"Time", "Log reductions"}}, May: []string{"From", "z above the reference temperature", "Stage", "Where", "Compare time"},
-	Help: "equivalent minutes at the reference temperature, added up over one heating; From is the floor below which nothing is credited"}
+import (
+	"math"
+	"strconv"
+)
+
+// Lethality is the integral of the lethal rate over one heating: the general method, F = ∫10^((T−Tref)/z)dt.
+var Lethality = &Kind{Name: "lethality", Needs: [][]string{{"Reference temperature"}, {"z"}, {"Time", "D"}, {"Time", "Log reductions"}},
+	May:  []string{"From", "z above the reference temperature", "Stage", "Where", "Compare time"},
+	Help: "equivalent minutes at the reference temperature, added up over one heating; From is the floor below which nothing is credited", judge: judgeLethality}
+
+// Cautions on lethality that was earned slowly: Stephens et al. 1994 found that Listeria heated at 5 K/min or slower survives
+// more than the integral says.
+const (
+	slowKs      = 5.0 / 60 // K/s
+	nearFloorK  = 10.0
+	muchOfTotal = 0.1
+)
+
+func judgeLethality(v *view) Finding {
+	l := v.l
+	heats := v.heatings()
+	q := question{unit: "min", warm: true, adds: true}
+	per, needS := 60.0, 0.0
+	if l.TimeS != nil {
+		needS = *l.TimeS
+		q.need = needS / 60
+	} else {
+		q.unit, q.need, per, needS = "log10", *l.Logs, *l.DS, *l.Logs**l.DS
+	}
+	q.measure = func(p path, t tilt) outcome {
+		k := v.killer(t)
+		best, which := -1.0, 0
+		for i, ivs := range heats {
+			if f := k.over(p, ivs); f > best {
+				best, which = f, i
+			}
+		}
+		best = math.Max(best, 0)
+		o := none(NotMet, "lethality time")
+		if l.TimeS == nil {
+			o.word = "lethality logs"
+		}
+		o.value, o.bad, o.margin, o.slow = best/per, -best/per, math.NaN(), true
+		o.holes = holes{"value": round(best/per, 2, -1)}
+		if l.TimeS != nil {
+			o.margin = best - needS
+		}
+		if l.enough(best, needS) {
+			o.verdict = Met
+		}
+		if t == (tilt{}) && len(heats) > 0 {
+			o.start, o.end = k.credited(p, heats[which])
+			o.at = o.end
+			if p.at != nil || v.h.Recorded {
+				o.cautions = k.cautions(p, heats[which], best)
+			}
+			if len(heats) > 1 {
+				o.notes = append(o.notes, say("note heatings", holes{"count": strconv.Itoa(len(heats))}))
+			}
+		}
+		return o
+	}
+	if l.ZAboveK == nil || *l.ZAboveK == *l.ZK {
+		q.room = func(p path) float64 { // moving the reference temperature by d divides the whole by 10^(d/z)
+			best, k := 0.0, v.killer(tilt{})
+			for _, ivs := range heats {
+				best = math.Max(best, k.over(p, ivs))
+			}
+			return *l.ZK * math.Log10(best/needS) // −Inf where nothing was credited: no margin
+		}
+	}
+	return v.judgePlaces(q)
+}
+
+// heatings are the stages of the limit, kept apart where chilling lies between: cooling after a heating belongs to it.
+func (v *view) heatings() [][]interval {
+	var cuts []float64
+	cold := false
+	for _, r := range v.runs {
+		if c := chills(r.stage); c {
+			cold = true
+		} else if cold {
+			cold = false
+			cuts = append(cuts, r.a)
+		}
+	}
+	cuts = append(cuts, v.c.end)
+	var heats [][]interval
+	from := 0.0
+	for _, to := range cuts {
+		var part []interval
+		for _, iv := range v.stages {
+			if a, b := math.Max(iv.a, from), math.Min(iv.b, to); b > a {
+				part = append(part, interval{a, b})
+			}
+		}
+		if len(part) > 0 {
+			heats = append(heats, part)
+		}
+		from = to
+	}
+	return heats
+}
+
+// killer adds up lethality: seconds at the reference temperature.
+type killer struct {
+	refC, lnBelow, lnAbove float64 // lnBelow, lnAbove: ln10/z, 1/K
+	floorC                 float64 // nothing is credited below it; −Inf for none
+	shiftK                 float64 // added to every temperature
+}
+
+// killer of a limit: the error lowers the food, the margin raises the reference temperature.
+func (v *view) killer(t tilt) killer {
+	l := v.l
+	k := killer{refC: *l.ReferenceC + t.ownK, lnBelow: math.Ln10 / *l.ZK, floorC: math.Inf(-1), shiftK: -t.errK}
+	k.lnAbove = k.lnBelow
+	if l.ZAboveK != nil {
+		k.lnAbove = math.Ln10 / *l.ZAboveK
+	}
+	if l.FromC != nil {
+		k.floorC = *l.FromC - sameK
+	}
+	return k
+}
+
+// rate is the lethal rate at a temperature, without dimension.
+func (k killer) rate(c float64) float64 {
+	if c < k.refC {
+		return math.Exp(k.lnBelow * (c - k.refC))
+	}
+	return math.Exp(k.lnAbove * (c - k.refC))
+}
+
+// over adds up over intervals, s.
+func (k killer) over(p path, ivs []interval) float64 {
+	sum := 0.0
+	for _, iv := range ivs {
+		q := p.in(iv)
+		top := math.Inf(-1)
+		for _, c := range q.c {
+			top = math.Max(top, c)
+		}
+		top += k.shiftK
+		for i := 0; i+1 < len(q.t); i++ {
+			sum += k.stretch(q, i, top)
+		}
+	}
+	return sum
+}
+
+// stretch adds up between two knots, split at the floor and at the reference temperature where z changes there. top is the
+// warmest temperature: stretches that are far below it are taken as straight, their share is below a part in a million.
+func (k killer) stretch(p path, i int, top float64) float64 {
+	a, b := p.c[i]+k.shiftK, p.c[i+1]+k.shiftK
+	if hi := math.Max(a, b); hi < k.floorC || p.t[i] == p.t[i+1] || (top-hi)*k.lnBelow > 21 {
+		return 0
+	}
+	if lo := math.Min(a, b); p.at == nil && lo >= k.floorC && (k.lnAbove == k.lnBelow || lo >= k.refC || math.Max(a, b) <= k.refC) {
+		return k.straight(p.t[i+1]-p.t[i], a, b)
+	}
+	ts := []float64{p.t[i], p.t[i+1]}
+	cs := []float64{a, b}
+	split := func(level float64) {
+		for n := 0; n+1 < len(cs); n++ {
+			if (cs[n]-level)*(cs[n+1]-level) < 0 {
+				s := path{t: ts[n : n+2], c: []float64{cs[n] - k.shiftK, cs[n+1] - k.shiftK}, at: p.at}
+				t := s.cross(0, level-k.shiftK)
+				ts = append(ts[:n+1], append([]float64{t}, ts[n+1:]...)...)
+				cs = append(cs[:n+1], append([]float64{level}, cs[n+1:]...)...)
+				return
+			}
+		}
+	}
+	if !math.IsInf(k.floorC, -1) {
+		split(k.floorC)
+	}
+	if k.lnAbove != k.lnBelow {
+		split(k.refC)
+	}
+	sum := 0.0
+	for n := 0; n+1 < len(ts); n++ {
+		if lo, hi := math.Min(cs[n], cs[n+1]), math.Max(cs[n], cs[n+1]); lo < k.floorC-sameK && hi <= k.floorC+sameK {
+			continue
+		}
+		if p.at == nil || (top-math.Max(cs[n], cs[n+1]))*k.lnBelow > 14 {
+			sum += k.straight(ts[n+1]-ts[n], cs[n], cs[n+1])
+		} else {
+			sum += k.gauss(p.at, ts[n], ts[n+1], cs[n], cs[n+1])
+		}
+	}
+	return sum
+}
+
+// straight is exact where the temperature runs straight and z does not change: dt·√(L1·L2)·sinh(x/2)/(x/2), x = ln(L2/L1).
+func (k killer) straight(dt, a, b float64) float64 {
+	ln := k.lnBelow
+	if (a+b)/2 >= k.refC {
+		ln = k.lnAbove
+	}
+	x := ln * (b - a)
+	g := 1 + x*x/24 + x*x*x*x/1920
+	if math.Abs(x) > 1e-3 {
+		g = math.Sinh(x/2) / (x / 2)
+	}
+	return dt * math.Exp(ln*((a+b)/2-k.refC)) * g
+}
+
+// Five-point Gauss-Legendre nodes and weights on −1…1 (Abramowitz and Stegun, table 25.4).
+var (
+	gaussX = [5]float64{-0.9061798459386640, -0.5384693101056831, 0, 0.5384693101056831, 0.9061798459386640}
+	gaussW = [5]float64{0.2369268850561891, 0.4786286704993665, 0.5688888888888889, 0.4786286704993665, 0.2369268850561891}
+)
+
+// gauss adds up the exact course between two instants, halved until the rate changes by less than a factor of about 4.5.
+func (k killer) gauss(at func(float64) float64, t0, t1, a, b float64) float64 {
+	if math.Abs(b-a)*math.Max(k.lnBelow, k.lnAbove) > 1.5 && t1-t0 > leastS {
+		m := (t0 + t1) / 2
+		c := at(m) + k.shiftK
+		return k.gauss(at, t0, m, a, c) + k.gauss(at, m, t1, c, b)
+	}
+	half, mid, sum := (t1-t0)/2, (t0+t1)/2, 0.0
+	for i, x := range gaussX {
+		sum += gaussW[i] * k.rate(at(mid+half*x)+k.shiftK)
+	}
+	return half * sum
+}
+
+// credited is when the first and the last of the lethality was earned, to a thousandth of its top rate.
+func (k killer) credited(p path, ivs []interval) (from, to float64) {
+	_, top := p.mostOf(ivs, 1)
+	low := math.Max(k.floorC, top-3*math.Ln10/k.lnBelow)
+	sp := path{t: p.t, c: p.c}.stay(ivs, atOrAbove(low))
+	if sp.count == 0 {
+		return math.NaN(), math.NaN()
+	}
+	return sp.total.from, sp.lastEnd
+}
+
+// cautions tells of lethality without a floor, and of a tenth or more earned barely above the floor or on a slow way up.
+func (k killer) cautions(p path, ivs []interval, total float64) []string {
+	var keys []string
+	if math.IsInf(k.floorC, -1) {
+		keys = append(keys, "lethality without floor")
+	}
+	slow := 0.0
+	for _, iv := range ivs {
+		q := p.in(iv)
+		for i := 0; i+1 < len(q.t); i++ {
+			dt, up := q.t[i+1]-q.t[i], q.c[i+1]-q.c[i]
+			if dt > 0 && (up > 0 && up/dt < slowKs || math.Max(q.c[i], q.c[i+1]) < k.floorC+nearFloorK) {
+				slow += k.straightFrom(dt, q.c[i]+k.shiftK, q.c[i+1]+k.shiftK)
+			}
+		}
+	}
+	if total > 0 && slow > muchOfTotal*total {
+		keys = append(keys, "slow come-up lethality")
+	}
+	return keys
+}
+
+// straightFrom is straight with what lies below the floor left out.
+func (k killer) straightFrom(dt, a, b float64) float64 {
+	if lo, hi := math.Min(a, b), math.Max(a, b); hi <= k.floorC {
+		return 0
+	} else if lo < k.floorC {
+		return k.straight(dt*(hi-k.floorC)/(hi-lo), k.floorC, hi)
+	}
+	return k.straight(dt, a, b)
+}

@@ -1,5 +1,53 @@
 package rules
 
+import "math"
+
 // Outside is hot or cold, nothing in between.
 var Outside = &Kind{Name: "outside", Unit: "min", Needs: [][]string{{"From"}, {"To"}}, May: []string{"Stage", "Where", "Compare"},
-	Help: "never strictly between From and To: at or below From, or at or above To"}
+	Help: "never strictly between From and To: at or below From, or at or above To", judge: judgeOutside}
+
+func judgeOutside(v *view) Finding {
+	l := v.l
+	strict := l.Compare == MoreThan || l.Compare == LessThan
+	q := question{unit: "min", need: 0, warm: true}
+	q.room = func(p path) float64 {
+		deep := math.Inf(-1) // the deepest point in the band, K; negative: how far off the nearest is
+		for _, iv := range v.stages {
+			s := p.in(iv)
+			for i := range s.c {
+				deep = math.Max(deep, math.Min(s.c[i]-*l.FromC, *l.ToC-s.c[i]))
+				if i > 0 && (s.c[i] > *l.ToC) != (s.c[i-1] > *l.ToC) && (s.c[i] < *l.FromC) != (s.c[i-1] < *l.FromC) {
+					deep = math.Max(deep, (*l.ToC-*l.FromC)/2)
+				}
+			}
+		}
+		return -deep
+	}
+	q.measure = func(p path, t tilt) outcome {
+		r := between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK+t.ownK)
+		if strict {
+			r = region{r.lo - 2*sameK, r.hi + 2*sameK}
+		}
+		sp := p.stay(v.stages, r)
+		o := none(NotMet, "outside")
+		o.value, o.bad = sp.total.s/60, sp.total.s/60
+		o.holes = holes{"value": lasting(sp.total.s, 1)}
+		if sp.count > 0 {
+			o.start, o.end, o.at = sp.total.from, sp.lastEnd, sp.total.from
+			return o
+		}
+		for _, iv := range v.stages { // a touch has no length
+			s := p.in(iv)
+			for i := range s.c {
+				if r.holds(s.c[i]) {
+					o.word, o.at = "outside touch", s.t[i]
+					return o
+				}
+			}
+		}
+		o.verdict, o.word = Met, "outside never"
+		o.bad = -1e3
+		return o
+	}
+	return v.judgePlaces(q)
+}

@@ -3,7 +3,60 @@ package rules
 // StayAbove and StayBelow are keeping hot and keeping cold: no excursion, or none longer than Time.
 var (
 	StayAbove = &Kind{Name: "stay above", Needs: [][]string{{"From", "To"}}, May: []string{"Time", "Counting", "Stage", "Where", "Compare", "Compare time"},
-		Help: "never below From during the stages; with Time: the longest excursion allowed (Counting total: all of them together; once: one only)"}
+		Help:  "never below From during the stages; with Time: the longest excursion allowed (Counting total: all of them together; once: one only)",
+		judge: func(v *view) Finding { return judgeStay(v, 1) }}
 	StayBelow = &Kind{Name: "stay below", Needs: [][]string{{"To", "From"}}, May: []string{"Time", "Counting", "Stage", "Where", "Compare", "Compare time"},
-		Help: "never above To during the stages; with Time: the longest excursion allowed (Counting total: all of them together; once: one only)"}
+		Help:  "never above To during the stages; with Time: the longest excursion allowed (Counting total: all of them together; once: one only)",
+		judge: func(v *view) Finding { return judgeStay(v, -1) }}
 )
+
+// judgeStay judges keeping at or above (sign 1) or at or below (sign −1) a temperature.
+func judgeStay(v *view, sign float64) Finding {
+	l := v.l
+	level := l.FromC
+	if level == nil {
+		level = l.ToC
+	}
+	if l.TimeS != nil {
+		return v.judgePlaces(v.excursion(*level, sign))
+	}
+	q := question{unit: "°C", need: *level, warm: sign > 0}
+	q.room = func(p path) float64 {
+		_, c := p.mostOf(v.stages, -sign)
+		return sign * (c - *level)
+	}
+	q.measure = func(p path, t tilt) outcome {
+		at, c := p.mostOf(v.stages, -sign)
+		o := none(NotMet, "stay above")
+		kept := l.warmSide(*level + t.errK + t.ownK)
+		if sign < 0 {
+			o.word, kept = "stay below", l.coldSide(*level-t.errK-t.ownK)
+		}
+		o.value, o.at, o.bad = c, at, -sign*c
+		o.holes = holes{"value": degrees(c, int(-sign))}
+		if kept.holds(c) {
+			o.verdict = Met
+		}
+		return o
+	}
+	return v.judgePlaces(q)
+}
+
+// excursion is a limit on how long a place may be beyond the temperature.
+func (v *view) excursion(level, sign float64) question {
+	l := v.l
+	c := l.Counting
+	if c == NotCounted {
+		c = Continuous // Time is the longest excursion
+	}
+	q := question{unit: "min", need: *l.TimeS / 60, warm: sign > 0}
+	q.measure = func(p path, t tilt) outcome {
+		// beyond the limit is whatever its operator does not allow
+		out, word := region{-1e9, l.warmSide(level+t.errK+t.ownK).lo - 2*sameK}, "out above"
+		if sign < 0 {
+			out, word = region{l.coldSide(level-t.errK-t.ownK).hi + 2*sameK, 1e9}, "out below"
+		}
+		return v.exposed(p.stay(v.stages, out), c, word)
+	}
+	return q
+}

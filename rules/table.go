@@ -1,5 +1,72 @@
 package rules
 
-// HoldTable is a table of temperatures and times of which any row may be met.
-var HoldTable = &Kind{Name: "hold table", Unit: "1", Needs: [][]string{{"Table"}, {"Counting"}}, May: []string{"Stage", "Where", "Compare", "Compare time"},
-	Help: "some row of the table is met: time at or above its temperature is at least its time; rows only, nothing between them"}
+import "math"
+
+// HoldTable is a table of temperatures and times of which any row may be met; nothing is read between or beyond its rows.
+var HoldTable = &Kind{Name: "hold table", Unit: "1", Needs: [][]string{{"Table"}, {"Counting"}},
+	May:  []string{"Stage", "Where", "Compare", "Compare time"},
+	Help: "some row of the table is met: time at or above its temperature is at least its time; rows only, nothing between them", judge: judgeTable}
+
+func judgeTable(v *view) Finding {
+	l := v.l
+	rows := sortedRows(l.Table)
+	q := question{unit: "1", need: 1, warm: true, adds: true}
+	q.measure = func(p path, t tilt) outcome {
+		best := none(NotMet, "table missed")
+		best.bad, best.value = math.Inf(1), 0
+		_, top := p.mostOf(v.stages, 1)
+		for _, row := range rows {
+			o := v.row(p, t, row, top)
+			if o.verdict == Met && best.verdict != Met || o.verdict == best.verdict && o.bad < best.bad {
+				best = o
+			}
+		}
+		if best.verdict == Met && t == (tilt{}) {
+			if best.row.S > 0 {
+				v.sparse(&best, p, l.warmSide(best.row.C), best.row.S, lasting(best.row.S, 1))
+			}
+			if best.row.C < 60-sameK {
+				best.cautions = append(best.cautions, "below 60 °C table row")
+			}
+		}
+		return best
+	}
+	return v.judgePlaces(q)
+}
+
+// row judges one row at one place, whose warmest temperature is top.
+func (v *view) row(p path, t tilt, row *Row, top float64) outcome {
+	r := v.l.warmSide(row.C + t.errK + t.ownK)
+	o := none(NotMet, "table missed")
+	o.row, o.slow = row, true
+	o.holes = holes{"row": row.words(), "table": v.l.Table.Name, "value": "0 s", "need": lasting(row.S, 1)}
+	if row.S == 0 {
+		o.value = 0
+		if r.holds(top) {
+			o.value, o.verdict, o.word = 1, Met, "table instant"
+			o.at, _ = p.mostOf(v.stages, 1)
+		}
+		o.bad = -o.value
+		return o
+	}
+	var sp spent
+	if top >= r.lo {
+		sp = p.stay(v.stages, r)
+	}
+	held := sp.counted(v.l.Counting)
+	o.value, o.bad, o.margin = held.s/row.S, -held.s/row.S, held.s-row.S
+	o.start, o.end, o.at = when(held, sp.count)
+	o.holes["value"] = lasting(held.s, -1)
+	if v.l.enough(held.s, row.S) && !(v.l.Counting == Once && sp.count > 1) {
+		o.verdict, o.word = Met, "table met"
+	}
+	return o
+}
+
+// words is a row as typed.
+func (r *Row) words() string {
+	if r.Typed != "" {
+		return r.Typed
+	}
+	return exactly(r.C, "°C") + ", " + exactly(r.S/60, "min")
+}

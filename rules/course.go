@@ -1,0 +1,296 @@
+package rules
+
+import (
+	"math"
+	"sort"
+)
+
+// How finely a course is followed.
+const (
+	straightK = 0.04 // a stretch whose middle lies further than this from the straight line is halved, K
+	leastS    = 0.05 // the shortest stretch that is halved again, s
+	sameK     = 1e-9 // temperatures closer than this are equal, K
+	sameS     = 1e-4 // times closer than this are equal, s
+	crossingS = 1e-5 // a crossing is found to this, s
+)
+
+// interval is a stretch of time from a to b, s from the start of the chain.
+type interval struct{ a, b float64 }
+
+// path is the course of one place: temperatures c (°C) at rising times t (s; two equal ones are a jump). Between two knots it
+// is straight; with at given, it is at(t), and the knots are close enough for it to be nearly straight.
+type path struct {
+	t, c []float64
+	at   func(t float64) float64
+}
+
+// in is the part of a path within an interval whose ends are knots.
+func (p path) in(iv interval) path {
+	first := sort.Search(len(p.t), func(i int) bool { return p.t[i] > iv.a }) - 1
+	last := sort.SearchFloat64s(p.t, iv.b)
+	first, last = max(first, 0), min(last, len(p.t)-1)
+	if last < first {
+		last = first
+	}
+	return path{p.t[first : last+1], p.c[first : last+1], p.at}
+}
+
+// value is the temperature at t; at a jump the one before it.
+func (p path) value(t float64) float64 {
+	if p.at != nil {
+		return p.at(t)
+	}
+	i := sort.SearchFloat64s(p.t, t)
+	switch {
+	case i == 0:
+		return p.c[0]
+	case i == len(p.t):
+		return p.c[i-1]
+	}
+	return p.c[i-1] + (t-p.t[i-1])/(p.t[i]-p.t[i-1])*(p.c[i]-p.c[i-1])
+}
+
+// cross finds when the path passes a level between knots i and i+1, which lie on either side of it.
+func (p path) cross(i int, level float64) float64 {
+	a, b, fa, fb := p.t[i], p.t[i+1], p.c[i]-level, p.c[i+1]-level
+	if fa == fb || b == a {
+		return a
+	}
+	x := a + (b-a)*fa/(fa-fb)
+	if p.at == nil || fa == 0 || fb == 0 {
+		return math.Min(math.Max(x, a), b)
+	}
+	side := 0 // Illinois: regula falsi that halves the end that stays
+	for n := 0; n < 40 && b-a > crossingS; n++ {
+		f := p.at(x) - level
+		prev := x
+		if f == 0 {
+			return x
+		}
+		if (f > 0) == (fa > 0) {
+			a, fa = x, f
+			if side == -1 {
+				fb /= 2
+			}
+			side = -1
+		} else {
+			b, fb = x, f
+			if side == 1 {
+				fa /= 2
+			}
+			side = 1
+		}
+		x = a + (b-a)*fa/(fa-fb)
+		if math.Abs(x-prev) < crossingS {
+			return x
+		}
+	}
+	return x
+}
+
+// most finds the highest point of sign·course within an interval whose ends are knots: its time and temperature.
+func (p path) most(iv interval, sign float64) (at, c float64) {
+	q := p.in(iv)
+	best := 0
+	for i := range q.c {
+		if sign*q.c[i] > sign*q.c[best] {
+			best = i
+		}
+	}
+	if p.at == nil {
+		return q.t[best], q.c[best]
+	}
+	return q.polish(best, sign)
+}
+
+// polish looks between the neighbours of a knot for the true extreme, by golden section.
+func (p path) polish(i int, sign float64) (at, c float64) {
+	at, c = p.t[i], p.c[i]
+	a, b := p.t[max(i-1, 0)], p.t[min(i+1, len(p.t)-1)]
+	if math.Abs(p.c[max(i-1, 0)]-c) < 1e-4 && math.Abs(p.c[min(i+1, len(p.t)-1)]-c) < 1e-4 {
+		return at, c
+	}
+	const g = 0.6180339887498949
+	x, y := b-g*(b-a), a+g*(b-a)
+	fx, fy := sign*p.at(x), sign*p.at(y)
+	for n := 0; n < 30 && b-a > 0.5; n++ {
+		if math.Abs(fx-fy) < 1e-7 {
+			break
+		}
+		if fx > fy {
+			b, y, fy = y, x, fx
+			x = b - g*(b-a)
+			fx = sign * p.at(x)
+		} else {
+			a, x, fx = x, y, fy
+			y = a + g*(b-a)
+			fy = sign * p.at(y)
+		}
+	}
+	if fx > sign*c {
+		at, c = x, sign*fx
+	}
+	if fy > sign*c {
+		at, c = y, sign*fy
+	}
+	return at, c
+}
+
+// region is a range of temperatures, °C, ends included.
+type region struct{ lo, hi float64 }
+
+// atOrAbove, above, atOrBelow, below and between are the regions of the operators; equality is taken to sameK.
+func atOrAbove(c float64) region      { return region{c - sameK, math.Inf(1)} }
+func above(c float64) region          { return region{c + sameK, math.Inf(1)} }
+func atOrBelow(c float64) region      { return region{math.Inf(-1), c + sameK} }
+func below(c float64) region          { return region{math.Inf(-1), c - sameK} }
+func between(lo, hi float64) region   { return region{lo + sameK, hi - sameK} }
+func (r region) holds(c float64) bool { return c >= r.lo && c <= r.hi }
+
+// spent is how long a course was in a region.
+type spent struct {
+	total, longest, first interval2
+	count                 int     // periods
+	lastEnd               float64 // when the last period ended, s
+}
+
+// interval2 is a length of time with the instants at which it began and ended, all in s.
+type interval2 struct{ s, from, to float64 }
+
+// stay measures how long a path is in a region within intervals whose ends are knots.
+func (p path) stay(ivs []interval, r region) spent {
+	var sp spent
+	for _, iv := range ivs {
+		q := p.in(iv)
+		on, start := false, 0.0
+		end := func(t float64) {
+			if on && t-start > 1e-9 {
+				sp.add(start, t)
+			}
+			on = false
+		}
+		for i := 0; i+1 < len(q.t); i++ {
+			A, B := q.c[i], q.c[i+1]
+			inA, inB := r.holds(A), r.holds(B)
+			switch {
+			case inA && inB:
+				if !on {
+					on, start = true, q.t[i]
+				}
+			case inA:
+				if !on {
+					on, start = true, q.t[i]
+				}
+				end(q.cross(i, r.edge(B)))
+			case inB:
+				end(q.t[i])
+				on, start = true, q.cross(i, r.edge(A))
+			default:
+				end(q.t[i])
+				if A < r.lo && B > r.hi || A > r.hi && B < r.lo {
+					on, start = true, q.cross(i, r.edge(A))
+					end(q.cross(i, r.edge(B)))
+				}
+			}
+		}
+		if len(q.t) > 0 {
+			end(q.t[len(q.t)-1])
+		}
+	}
+	return sp
+}
+
+// edge is the end of the region that a temperature outside it lies beyond.
+func (r region) edge(c float64) float64 {
+	if c < r.lo {
+		return r.lo
+	}
+	return r.hi
+}
+
+// add counts one more period.
+func (sp *spent) add(from, to float64) {
+	p := interval2{to - from, from, to}
+	if sp.count == 0 {
+		sp.first, sp.total.from = p, from
+	}
+	if p.s > sp.longest.s {
+		sp.longest = p
+	}
+	sp.count++
+	sp.total.s += p.s
+	sp.total.to, sp.lastEnd = to, to
+}
+
+// counted picks the period that a counting asks for.
+func (sp spent) counted(c Counting) interval2 {
+	switch c {
+	case Continuous:
+		return sp.longest
+	case Once:
+		return sp.first
+	}
+	return sp.total
+}
+
+// refine makes the exact path of a course from its knots: it halves every stretch that is not nearly straight.
+// course fills out with the temperatures at rising times.
+func refine(t, c []float64, course func(t, out []float64), at func(float64) float64) path {
+	type stretch struct{ a, b, ca, cb float64 }
+	var open []stretch
+	for i := 0; i+1 < len(t); i++ {
+		if t[i+1]-t[i] > leastS {
+			open = append(open, stretch{t[i], t[i+1], c[i], c[i+1]})
+		}
+	}
+	newT, newC := append([]float64(nil), t...), append([]float64(nil), c...)
+	for depth := 0; len(open) > 0 && depth < 14; depth++ {
+		mid, out := make([]float64, len(open)), make([]float64, len(open))
+		for i, s := range open {
+			mid[i] = (s.a + s.b) / 2
+		}
+		course(mid, out)
+		var next []stretch
+		for i, s := range open {
+			if math.Abs(out[i]-(s.ca+s.cb)/2) > straightK && s.b-s.a > 2*leastS {
+				next = append(next, stretch{s.a, mid[i], s.ca, out[i]}, stretch{mid[i], s.b, out[i], s.cb})
+			}
+		}
+		newT, newC = append(newT, mid...), append(newC, out...)
+		open = next
+	}
+	sort.Sort(byTime{newT, newC})
+	return path{newT, newC, at}
+}
+
+// byTime sorts knots.
+type byTime struct{ t, c []float64 }
+
+func (k byTime) Len() int           { return len(k.t) }
+func (k byTime) Less(i, j int) bool { return k.t[i] < k.t[j] }
+func (k byTime) Swap(i, j int)      { k.t[i], k.t[j] = k.t[j], k.t[i]; k.c[i], k.c[j] = k.c[j], k.c[i] }
+
+// thin picks the knots of a straight-line course that keep it within tol (K) of itself: the first look of a local search.
+func thin(t, c []float64, tol float64) []int {
+	keep := []int{0}
+	for i := 0; i < len(t)-1; {
+		// the longest stretch from i whose knots all lie within tol of its chord, by a cone of slopes
+		lo, hi, j := math.Inf(-1), math.Inf(1), i+1
+		last := i + 1
+		for ; j < len(t); j++ {
+			dt := t[j] - t[i]
+			if dt <= 0 {
+				break
+			}
+			s := (c[j] - c[i]) / dt
+			if s < lo || s > hi {
+				break
+			}
+			last = j
+			lo, hi = math.Max(lo, (c[j]-tol-c[i])/dt), math.Min(hi, (c[j]+tol-c[i])/dt)
+		}
+		keep = append(keep, last)
+		i = last
+	}
+	return keep
+}

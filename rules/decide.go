@@ -1,0 +1,394 @@
+package rules
+
+import (
+	"math"
+	"sort"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+)
+
+// tilt moves a limit's temperatures against the food, in K: positive is less favourable.
+type tilt struct {
+	errK float64 // the error band: every temperature of the limit moves, each to its own unfavourable side
+	ownK float64 // the limit's own temperature alone moves: what the margin asks
+}
+
+// outcome is what a limit says of one place.
+type outcome struct {
+	verdict    Verdict
+	bad        float64 // how unfavourable within comparable outcomes: larger is worse
+	value      float64 // in the unit of the finding; NaN for none
+	margin     float64 // room in s; NaN for none
+	at         float64 // deciding time, s; NaN for none
+	start, end float64 // clock, s; NaN for none
+	word       string  // key of the sentence
+	holes      holes   // what its placeholders stand for, besides the usual
+	row        *Row    // the deciding row of a table
+	notes      []string
+	cautions   []string
+	slow       bool   // the place is the slowest one, in the words of the trade
+	sparse     string // why the readings cannot show it; "" if they can
+}
+
+// none is an outcome without numbers.
+func none(v Verdict, word string) outcome {
+	nan := math.NaN()
+	return outcome{verdict: v, word: word, value: nan, margin: nan, at: nan, start: nan, end: nan}
+}
+
+// measure judges the course of one place.
+type measure func(p path, t tilt) outcome
+
+// judgement by places: a measure, its margin, and what the finding says.
+type question struct {
+	measure measure
+	room    func(p path) float64 // K; nil: found by moving the limit's own temperature
+	unit    string
+	need    float64 // required, in unit; NaN for none
+	warm    bool    // colder food would be less favourable, so a bound from above proves nothing once it begins
+	adds    bool    // time adds up: what was reached before a bound begins counts all the same
+}
+
+// rank orders verdicts from harmless to worst.
+func rank(v Verdict) int { return [...]int{CannotTell: 2, Met: 1, NotMet: 3, NotApplicable: 0}[v] }
+
+// worse tells whether a is less favourable than b.
+func worse(a, b outcome) bool {
+	if rank(a.verdict) != rank(b.verdict) {
+		return rank(a.verdict) > rank(b.verdict)
+	}
+	return a.bad > b.bad
+}
+
+// candidate is a place that may decide.
+type candidate struct {
+	place   model.Place
+	surface bool
+	path    path
+	nominal outcome
+}
+
+// judgePlaces answers a question about every place of the limit and makes the finding of the least favourable one.
+func (v *view) judgePlaces(q question) Finding {
+	s := v.scope()
+	if s.medium == nil && s.one == nil && len(s.spots) == 0 {
+		return v.blank(CannotTell, s.why)
+	}
+	cs := v.candidates(s, q)
+	best := 0
+	for i := range cs {
+		if worse(cs[i].nominal, cs[best].nominal) {
+			best = i
+		}
+	}
+	o := cs[best].nominal
+	f := v.finding(o, q)
+	if s.medium == nil {
+		place := cs[best].place
+		f.Place, f.PlaceName = &place, s.name
+		if s.name == "" || s.surfaceOnly {
+			f.PlaceName = v.placeName(place, s.surfaceOnly)
+		}
+	} else {
+		f.PlaceName = s.name
+	}
+	if f.Verdict != NotApplicable {
+		f.MarginK = finite(v.room(s, q, cs))
+	}
+	f.Why = v.sentence(&f, o, v.weigh(&f, o, q, cs))
+	return f
+}
+
+// candidates are the places whose exact courses decide: the least favourable spots of the scan and what lies beside them.
+func (v *view) candidates(s scope, q question) []candidate {
+	switch {
+	case s.medium != nil:
+		return []candidate{{path: *s.medium, nominal: q.measure(*s.medium, tilt{})}}
+	case s.one != nil:
+		p := v.c.path(*s.one)
+		return []candidate{{place: *s.one, path: p, nominal: q.measure(p, tilt{})}}
+	}
+	picks := v.pick(s.spots, q, 0)
+	if v.errK > 0.05 {
+		picks = append(picks, v.pick(s.spots, q, v.errK)...)
+	}
+	var cs []candidate
+	add := func(p model.Place, surface bool) {
+		for _, c := range cs {
+			if near(c.place, p) {
+				return
+			}
+		}
+		path := v.c.path(p)
+		cs = append(cs, candidate{p, surface, path, q.measure(path, tilt{})})
+	}
+	for n, i := range picks {
+		add(v.c.spots[i].Place, v.c.spots[i].Surface)
+		if v.h.Recorded || n > 0 {
+			continue
+		}
+		times := v.c.lightTimes(i)
+		out := make([]float64, len(times))
+		p, _ := v.h.Least(v.c.spots[i], s.surfaceOnly, func(p model.Place) float64 {
+			v.h.Course(p, times, out)
+			o := q.measure(path{t: times, c: out}, tilt{})
+			if o.verdict == NotApplicable {
+				return 1e9
+			}
+			return -o.bad
+		})
+		add(p, v.c.spots[i].Surface && s.surfaceOnly)
+	}
+	return cs
+}
+
+// pick ranks spots by their scanned courses and returns the worst, and the worst of those that are not beside it.
+func (v *view) pick(spots []int, q question, errK float64) []int {
+	best, second := -1, -1
+	var ob, os outcome
+	for _, i := range spots {
+		o := q.measure(path{t: v.c.times, c: v.c.rows[i]}, tilt{errK: errK})
+		switch {
+		case best < 0 || worse(o, ob):
+			second, os = best, ob
+			best, ob = i, o
+		case second < 0 || worse(o, os):
+			second, os = i, o
+		}
+	}
+	if second >= 0 && (v.h.Recorded || os.verdict != ob.verdict) {
+		return []int{best, second}
+	}
+	return []int{best}
+}
+
+// room is the smallest margin in K over all places.
+func (v *view) room(s scope, q question, cs []candidate) float64 {
+	margin := func(p path, least float64) float64 {
+		if q.room != nil {
+			return q.room(p)
+		}
+		return roomBy(q.measure, path{t: p.t, c: p.c}, least)
+	}
+	least, any := math.Inf(1), false
+	take := func(r float64) {
+		if !math.IsNaN(r) {
+			any = true
+			least = math.Min(least, r)
+		}
+	}
+	for _, c := range cs {
+		take(margin(c.path, math.Inf(1)))
+	}
+	at := -1
+	for _, i := range s.spots {
+		before := least
+		if take(margin(path{t: v.c.times, c: v.c.rows[i]}, least)); least < before-0.002 {
+			at = i
+		}
+	}
+	if at >= 0 && !v.h.Recorded { // a spot that is not among the candidates decides: its exact course
+		if r := margin(v.c.path(v.c.spots[at].Place), math.Inf(1)); !math.IsNaN(r) {
+			least = r
+			for _, c := range cs {
+				if r := margin(c.path, math.Inf(1)); r < least {
+					least = r
+				}
+			}
+		}
+	}
+	if !any {
+		return math.NaN()
+	}
+	return least
+}
+
+// roomBy finds by bisection how far the limit's own temperature may move before a place no longer meets it, K. It answers
+// +Inf where no change within reach matters or where the place meets it at least (then it cannot be the smallest).
+func roomBy(m measure, p path, least float64) float64 {
+	const reach = 300.0
+	met := func(k float64) bool {
+		v := m(p, tilt{ownK: k}).verdict
+		return v == Met || v == NotApplicable
+	}
+	hi := math.Min(least, reach)
+	if met(hi) {
+		return math.Inf(1)
+	}
+	lo := -reach
+	if !met(lo) {
+		return math.NaN()
+	}
+	// from 0 outwards, so that few steps find a small margin
+	if hi > 0 && met(0) {
+		lo = 0
+	} else if hi > 0 {
+		hi = 0
+	}
+	for hi-lo > 5e-4 {
+		if mid := (lo + hi) / 2; met(mid) {
+			lo = mid
+		} else {
+			hi = mid
+		}
+	}
+	return lo
+}
+
+// worstAt is the worst outcome over the candidates for a given error.
+func worstAt(q question, cs []candidate, errK float64) outcome {
+	o := q.measure(cs[0].path, tilt{errK: errK})
+	for _, c := range cs[1:] {
+		if p := q.measure(c.path, tilt{errK: errK}); worse(p, o) {
+			o = p
+		}
+	}
+	return o
+}
+
+// weigh applies the error band and the bound of the history to the verdict, and says so in the tail of the sentence.
+func (v *view) weigh(f *Finding, o outcome, q question, cs []candidate) (tail string) {
+	if v.errK > 0 {
+		word := ""
+		if o.verdict == Met && worstAt(q, cs, v.errK).verdict != Met {
+			word = "within error met"
+		} else if o.verdict == NotMet && worstAt(q, cs, -v.errK).verdict == Met {
+			word = "within error missed"
+		}
+		if word != "" {
+			f.Verdict = CannotTell
+			h := holes{"error": kelvinUp(v.errK)}
+			if f.MarginK == nil || math.Abs(*f.MarginK) > v.errK*1.5 {
+				word = "within error"
+			} else {
+				h["by"] = kelvinUp(math.Abs(*f.MarginK))
+			}
+			return say(word, h)
+		}
+	}
+	if f.Verdict == Met && q.warm && v.h.Bound != "" && v.past(v.h.BoundFromS) && !same(v.l.Where.Name, "medium") {
+		if q.adds && v.sure(q, cs) {
+			return ""
+		}
+		f.Verdict = CannotTell
+		return say("bound", holes{"bound": v.h.Bound, "at": clockTime(v.h.BoundFromS)})
+	}
+	if o.sparse != "" && f.Verdict == Met {
+		f.Verdict = CannotTell
+		return o.sparse
+	}
+	return ""
+}
+
+// sure tells whether a limit is met by what was reached before the temperatures became bounds.
+func (v *view) sure(q question, cs []candidate) bool {
+	for _, c := range cs {
+		if q.measure(v.dropFrom(c.path), tilt{errK: v.errK}).verdict != Met {
+			return false
+		}
+	}
+	return true
+}
+
+// past tells whether the stages of the limit go on after an instant.
+func (v *view) past(t float64) bool {
+	n := len(v.stages)
+	return n > 0 && v.stages[n-1].b > t+sameS
+}
+
+// dropFrom replaces a course from an instant on by absolute cold: what a bound from above leaves certain.
+func (v *view) dropFrom(p path) path {
+	t := v.h.BoundFromS
+	i := sort.SearchFloat64s(p.t, t)
+	if i >= len(p.t) {
+		return p
+	}
+	q := path{t: append(append([]float64(nil), p.t[:i+1]...), p.t[i:]...)}
+	q.c = append(append([]float64(nil), p.c[:i+1]...), make([]float64, len(p.t)-i)...)
+	for k := i + 1; k < len(q.c); k++ {
+		q.c[k] = -273.15
+	}
+	return q
+}
+
+// blank is a finding without numbers.
+func (v *view) blank(verdict Verdict, why string) Finding {
+	return Finding{Limit: v.l, Level: v.level(), Verdict: verdict, Unit: v.l.Kind.Unit, Why: why, Cells: v.cells(math.NaN())}
+}
+
+// level is the word of the column Level.
+func (v *view) level() string {
+	if v.l.Advice {
+		return "advice"
+	}
+	return "must"
+}
+
+// cells are the limit's cell and the cell of the step that holds an instant.
+func (v *view) cells(t float64) []cell.Ref {
+	var refs []cell.Ref
+	if !v.l.At.IsZero() {
+		refs = append(refs, v.l.At)
+	}
+	if !math.IsNaN(t) {
+		if r, ok := v.stepAt(t); ok {
+			refs = append(refs, r)
+		}
+	}
+	return refs
+}
+
+// finding turns an outcome into a finding, without place, margin in K and sentence.
+func (v *view) finding(o outcome, q question) Finding {
+	f := v.blank(o.verdict, "")
+	f.Unit = q.unit
+	f.Value, f.Required, f.MarginS = finite(o.value), finite(q.need), finite(o.margin)
+	f.AtS, f.ClockStartS, f.ClockEndS = finite(o.at), finite(o.start), finite(o.end)
+	f.Notes, f.Cautions = append(f.Notes, o.notes...), append(f.Cautions, o.cautions...)
+	if o.row != nil && !o.row.At.IsZero() {
+		f.Cells = append(f.Cells, o.row.At)
+	}
+	f.Cells = append(f.Cells, v.cells(o.at)[len(v.cells(math.NaN())):]...)
+	return f
+}
+
+// finite is a number of a finding: nil for NaN and infinities, which a document cannot hold.
+func finite(x float64) *float64 {
+	if math.IsNaN(x) || math.IsInf(x, 0) {
+		return nil
+	}
+	return &x
+}
+
+// enough compares a time held with a needed one: at least, unless the limit says more than. Both in s.
+func (l *Limit) enough(held, need float64) bool {
+	if l.CompareTime == MoreThan {
+		return held > need+sameS
+	}
+	return held >= need-sameS
+}
+
+// within compares a time taken with an allowed one: at most, unless the limit says less than. Both in s.
+func (l *Limit) within(taken, allowed float64) bool {
+	if l.CompareTime == LessThan {
+		return taken < allowed-sameS
+	}
+	return taken <= allowed+sameS
+}
+
+// warmSide is the region at or above a temperature by the limit's operator.
+func (l *Limit) warmSide(c float64) region {
+	if l.Compare == MoreThan {
+		return above(c)
+	}
+	return atOrAbove(c)
+}
+
+// coldSide is the region at or below a temperature by the limit's operator.
+func (l *Limit) coldSide(c float64) region {
+	if l.Compare == LessThan {
+		return below(c)
+	}
+	return atOrBelow(c)
+}

@@ -1,0 +1,423 @@
+package rules
+
+import (
+	"fmt"
+	"math"
+	"sort"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+)
+
+// courses is what the limits of one history share: the scan with the ends of every step among its instants, and exact paths.
+type courses struct {
+	h     *model.History
+	times []float64
+	rows  [][]float64 // rows[spot][time], °C
+	spots []model.Spot
+	end   float64
+	exact map[model.Place]path
+	light map[int][]float64 // of a spot: the instants that a local search looks at
+	size  [3]interval       // range of Up, Across, Along over the spots, m
+	air   *path
+	damp  *path
+}
+
+// newCourses prepares a history for judging.
+func newCourses(h *model.History) *courses {
+	scan := h.Scan()
+	c := &courses{h: h, end: h.EndS(), exact: map[model.Place]path{}, light: map[int][]float64{}}
+	if scan == nil || len(scan.TimesS) == 0 {
+		return c
+	}
+	c.times, c.rows, c.spots = scan.TimesS, scan.C, scan.Spots
+	if len(h.Spans) == 0 {
+		c.end = c.times[len(c.times)-1]
+	}
+	bounds := []float64{0, c.end}
+	for _, sp := range h.Spans {
+		bounds = append(bounds, sp.StartS, sp.EndS)
+	}
+	if h.Bound != "" {
+		bounds = append(bounds, h.BoundFromS)
+	}
+	c.insert(bounds)
+	for i, s := range c.spots {
+		for k, x := range [3]float64{s.UpM, s.AcrossM, s.AlongM} {
+			if i == 0 {
+				c.size[k] = interval{x, x}
+			}
+			c.size[k] = interval{math.Min(c.size[k].a, x), math.Max(c.size[k].b, x)}
+		}
+	}
+	return c
+}
+
+// insert makes the given times instants of the scan, by straight lines.
+func (c *courses) insert(times []float64) {
+	missing := false
+	for _, t := range times {
+		i := sort.SearchFloat64s(c.times, t)
+		missing = missing || i == len(c.times) || c.times[i] != t
+	}
+	if !missing {
+		return
+	}
+	all := append(append([]float64(nil), c.times...), times...)
+	sort.Float64s(all)
+	n := 0
+	for i, t := range all {
+		if i == 0 || t > all[n-1] {
+			all[n] = t
+			n++
+		}
+	}
+	all = all[:n]
+	rows := make([][]float64, len(c.rows))
+	for s := range c.rows {
+		p := path{t: c.times, c: c.rows[s]}
+		rows[s] = make([]float64, n)
+		for i, t := range all {
+			rows[s][i] = p.value(t)
+		}
+	}
+	c.times, c.rows = all, rows
+}
+
+// path is the exact course of a place.
+func (c *courses) path(p model.Place) path {
+	if q, ok := c.exact[p]; ok {
+		return q
+	}
+	out := make([]float64, len(c.times))
+	c.h.Course(p, c.times, out)
+	q := path{t: c.times, c: out}
+	if !c.h.Recorded {
+		q = refine(c.times, out, func(t, out []float64) { c.h.Course(p, t, out) }, func(t float64) float64 { return c.h.At(p, t) })
+	}
+	c.exact[p] = q
+	return q
+}
+
+// lightTimes are the instants at which a local search beside a spot looks.
+func (c *courses) lightTimes(spot int) []float64 {
+	if t, ok := c.light[spot]; ok {
+		return t
+	}
+	keep := map[float64]bool{0: true, c.end: true}
+	for _, sp := range c.h.Spans {
+		keep[sp.StartS], keep[sp.EndS] = true, true
+	}
+	if c.h.Bound != "" {
+		keep[c.h.BoundFromS] = true
+	}
+	for _, i := range thin(c.times, c.rows[spot], 0.15) {
+		keep[c.times[i]] = true
+	}
+	var t []float64
+	for x := range keep {
+		t = append(t, x)
+	}
+	sort.Float64s(t)
+	c.light[spot] = t
+	return t
+}
+
+// medium is the course of the main surroundings, with a jump at each change; nil where some step has none.
+func (c *courses) medium() *path {
+	if c.air == nil {
+		c.air = c.stated(c.h.MediumC, func(e *model.Exposure) bool { return len(e.Medium.TimesS) > 0 })
+	}
+	return c.air
+}
+
+// humidity is the course of the stated relative humidity (%), NaN where none was stated.
+func (c *courses) humidity() *path {
+	if c.damp == nil {
+		c.damp = c.stated(c.h.HumidityPc, func(e *model.Exposure) bool { return e.Medium.RH != nil })
+	}
+	return c.damp
+}
+
+// stated samples a figure of the surroundings just after each change, at its own points, and at the instants of a record.
+func (c *courses) stated(value func(float64) float64, has func(*model.Exposure) bool) *path {
+	p := &path{}
+	spans := c.h.Spans
+	if len(spans) == 0 {
+		spans = []model.Span{{EndS: c.end}}
+	}
+	for _, sp := range spans {
+		t := []float64{sp.StartS}
+		if sp.Step != nil && has(&sp.Step.Exposure) {
+			for _, x := range sp.Step.Exposure.Medium.TimesS {
+				if sp.StartS+x > t[len(t)-1] && sp.StartS+x < sp.EndS {
+					t = append(t, sp.StartS+x)
+				}
+			}
+		}
+		if c.h.Recorded {
+			for _, x := range c.times {
+				if x > sp.StartS && x < sp.EndS {
+					t = append(t, x)
+				}
+			}
+			sort.Float64s(t)
+		}
+		t = append(t, sp.EndS)
+		for i, x := range t {
+			at := x
+			if i == 0 { // at the instant of a change a history gives the value before it
+				at = x + math.Min(1e-6, (sp.EndS-sp.StartS)/2)
+			}
+			p.t, p.c = append(p.t, x), append(p.c, value(at))
+		}
+	}
+	return p
+}
+
+// window is a part of the chain from the start of a cook, reheat or thaw stage (or of the chain) to the next cook or reheat.
+type window struct {
+	interval
+	last    bool    // it ends with the chain
+	clock   float64 // instant of an event clock; NaN for a crossing
+	stageTo float64 // where the stage named in Stage ends for good within the window; +Inf if no stage is named
+}
+
+// run is a stage as it ran: steps of one stage in a row.
+type run struct {
+	interval
+	stage *model.Stage
+}
+
+// runs joins consecutive steps of the same stage.
+func runs(spans []model.Span) []run {
+	var rs []run
+	for _, sp := range spans {
+		if sp.Step == nil {
+			continue
+		}
+		if n := len(rs); n > 0 && rs[n-1].stage == sp.Step.Stage && rs[n-1].b == sp.StartS {
+			rs[n-1].b = sp.EndS
+			continue
+		}
+		rs = append(rs, run{interval{sp.StartS, sp.EndS}, sp.Step.Stage})
+	}
+	return rs
+}
+
+// view is a history seen through one limit.
+type view struct {
+	l      *Limit
+	h      *model.History
+	c      *courses
+	runs   []run
+	stages []interval // where the limit's stages ran, joined where they meet; the whole chain if none is named
+	errK   float64
+}
+
+// newView looks at a history through a limit.
+func newView(l *Limit, c *courses) *view {
+	v := &view{l: l, h: c.h, c: c, runs: runs(c.h.Spans), errK: c.h.ErrorK}
+	if same(l.Where.Name, "medium") {
+		v.errK = 0 // stated, not calculated
+	}
+	v.stages = v.within(l.Stages)
+	return v
+}
+
+// within lists where stages ran, joined where they meet; the whole chain for none.
+func (v *view) within(stages []*model.Stage) []interval {
+	if len(stages) == 0 {
+		return []interval{{0, v.c.end}}
+	}
+	var ivs []interval
+	for _, r := range v.runs {
+		if !named(stages, r.stage) {
+			continue
+		}
+		if n := len(ivs); n > 0 && ivs[n-1].b == r.a {
+			ivs[n-1].b = r.b
+			continue
+		}
+		ivs = append(ivs, r.interval)
+	}
+	return ivs
+}
+
+// named tells whether a stage is in a list.
+func named(list []*model.Stage, s *model.Stage) bool {
+	for _, x := range list {
+		if x == s {
+			return true
+		}
+	}
+	return false
+}
+
+// lacks names the stage that the limit needs and the process does not have; nil if it has them all.
+func (v *view) lacks() *model.Stage {
+	has := func(s *model.Stage) bool { return len(v.within([]*model.Stage{s})) > 0 }
+	if len(v.l.Stages) > 0 && len(v.stages) == 0 {
+		return v.l.Stages[0]
+	}
+	for _, s := range []*model.Stage{v.l.Then, v.l.Clock.Start, v.l.Clock.End} {
+		if s != nil && !has(s) {
+			return s
+		}
+	}
+	return nil
+}
+
+// windows cuts the chain for the limits that have a clock.
+func (v *view) windows() []window {
+	starts := []float64{0}
+	var heats []float64
+	for _, r := range v.runs {
+		if r.stage == model.Cook || r.stage == model.Reheat {
+			heats = append(heats, r.a)
+		}
+		if (r.stage == model.Cook || r.stage == model.Reheat || r.stage == model.Thaw) && r.a > starts[len(starts)-1] {
+			starts = append(starts, r.a)
+		}
+	}
+	var ws []window
+	for _, a := range starts {
+		w := window{interval: interval{a, v.c.end}, last: true, clock: math.NaN(), stageTo: math.Inf(1)}
+		for _, b := range heats {
+			if b > a {
+				w.b, w.last = b, false
+				break
+			}
+		}
+		if v.timed(&w) {
+			ws = append(ws, w)
+		}
+	}
+	return ws
+}
+
+// timed fills in the event clock and the end of the named stage, and tells whether the window has them.
+func (v *view) timed(w *window) bool {
+	if len(v.l.Stages) > 0 {
+		w.stageTo = math.Inf(-1)
+		for _, iv := range v.stages {
+			if iv.a < w.b && iv.b > w.a {
+				w.stageTo = math.Min(iv.b, w.b)
+			}
+		}
+		if math.IsInf(w.stageTo, -1) {
+			return false
+		}
+	}
+	cl := v.l.Clock
+	if cl.Start == nil && cl.End == nil {
+		return true
+	}
+	for _, r := range v.runs {
+		switch {
+		case cl.Start == r.stage && r.a >= w.a && r.a < w.b:
+			w.clock = r.a
+			return true
+		case cl.End == r.stage && r.b > w.a && r.b <= w.b:
+			w.clock = r.b
+			return true
+		}
+	}
+	return false
+}
+
+// scope is the places that a limit is about.
+type scope struct {
+	spots       []int // of the scan; nil: one place or the medium
+	surfaceOnly bool
+	one         *model.Place
+	medium      *path
+	name        string // for the words; "" for every point
+	why         string // why there are no places at all
+}
+
+// scope finds the places of Where.
+func (v *view) scope() scope {
+	name := strings.TrimSpace(v.l.Where.Name)
+	switch {
+	case name == "" || same(name, "every point"):
+		all := make([]int, len(v.c.spots))
+		for i := range all {
+			all[i] = i
+		}
+		return scope{spots: all, why: say("no places", nil)}
+	case same(name, "surface"):
+		s := scope{surfaceOnly: true, why: say("no surface", nil), name: "surface"}
+		for i, sp := range v.c.spots {
+			if sp.Surface {
+				s.spots = append(s.spots, i)
+			}
+		}
+		return s
+	case same(name, "medium"):
+		p := v.c.medium()
+		for _, iv := range v.stages {
+			for _, x := range p.in(iv).c {
+				if math.IsNaN(x) {
+					return scope{why: say("no medium", nil)}
+				}
+			}
+		}
+		return scope{medium: p, name: "medium"}
+	}
+	for _, pt := range v.h.Points {
+		if same(pt.Name, name) {
+			return scope{one: &pt.Place, name: pt.Name}
+		}
+	}
+	return scope{why: say("no point", holes{"point": name})}
+}
+
+// placeName says where a place is.
+func (v *view) placeName(p model.Place, surface bool) string {
+	for _, pt := range v.h.Points {
+		if near(pt.Place, p) {
+			return pt.Name
+		}
+	}
+	x := [3]float64{p.UpM, p.AcrossM, p.AlongM}
+	if near(p, model.Place{}) {
+		return "centre"
+	}
+	on := surface
+	for k, s := range v.c.size {
+		if s.b > s.a && (math.Abs(x[k]-s.b) < 1e-6 || s.a < 0 && math.Abs(x[k]-s.a) < 1e-6) {
+			on = true
+		}
+	}
+	if on {
+		return "surface"
+	}
+	up := fmt.Sprintf("%.0f mm from the centre", 1000*math.Abs(x[0]))
+	if v.c.size[0].a < 0 {
+		up = fmt.Sprintf("%.0f mm above the underside", 1000*(x[0]-v.c.size[0].a))
+	}
+	if math.Abs(x[1]) > 5e-4 {
+		up += fmt.Sprintf(", %.0f mm across", 1000*math.Abs(x[1]))
+	}
+	if math.Abs(x[2]) > 5e-4 {
+		up += fmt.Sprintf(", %.0f mm along", 1000*math.Abs(x[2]))
+	}
+	return up
+}
+
+// near tells whether two places are the same to a hundredth of a millimetre.
+func near(a, b model.Place) bool {
+	return math.Abs(a.UpM-b.UpM) < 1e-5 && math.Abs(a.AcrossM-b.AcrossM) < 1e-5 && math.Abs(a.AlongM-b.AlongM) < 1e-5
+}
+
+// stepAt is the cell of the step that holds an instant, at a change the one before it.
+func (v *view) stepAt(t float64) (cell.Ref, bool) {
+	for _, sp := range v.h.Spans {
+		if t <= sp.EndS && sp.Step != nil {
+			return sp.Step.At, !sp.Step.At.IsZero()
+		}
+	}
+	return cell.Ref{}, false
+}

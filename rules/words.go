@@ -1,0 +1,225 @@
+package rules
+
+import (
+	"fmt"
+	"math"
+	"strconv"
+	"strings"
+)
+
+// holes are what the placeholders of a sentence stand for.
+type holes map[string]string
+
+// words are the sentences of the findings: whole ones, so that they can be translated. {who} is the deciding place, {from},
+// {to}, {time}, {second} are the limit's own figures as typed; results are rounded to the side that is less favourable.
+var words = map[string]string{
+	"no limit judged":   "no limit judged",
+	"no places":         "The history has no place in the food to judge.",
+	"no surface":        "The history has no place on the surface to judge.",
+	"no medium":         "The temperature of the surroundings is not known during the whole of the stages, so it cannot be told.",
+	"no point":          "The product has no point named {point}, so it cannot be told.",
+	"stage lacking":     "The process has no stage {stage}, which this limit is about.",
+	"stage lacking own": "The process has no stage {stage}, although this limit names this very product or its family, so it cannot be told.",
+	"faulty":            "The limit cannot be judged as it stands: {fault}.",
+
+	"within error met":    "; it is met by {by}, which is less than the error of the calculation ({error}), so it cannot be told.",
+	"within error missed": "; it is missed by {by}, which is less than the error of the calculation ({error}), so it cannot be told.",
+	"within error":        "; the error of the calculation ({error}) decides, so it cannot be told.",
+	"bound":               "; but from {at} on the temperatures are only bounds ({bound}), so it cannot be told.",
+	"sparse":              "; but the readings there are {gap} apart and cannot show {time}, so it cannot be told.",
+
+	"hold above":      "{who} stayed at or above {from} for {value} of the {time} needed.",
+	"hold below":      "{who} stayed at or below {to} for {value} of the {time} needed.",
+	"hold again":      "{who} was there for more than one period ({count}), and the limit allows one only; the first lasted {value} of the {time} needed.",
+	"reached above":   "{who} got no warmer than {value} against {from} to be reached.",
+	"reached below":   "{who} got no colder than {value} against {to} to be reached.",
+	"table met":       "{who} met the row {row} of the table {table}: it stayed there for {value} of the {need} needed.",
+	"table missed":    "{who} met no row of the table {table}; the nearest row is {row}, with {value} of the {need} needed.",
+	"table instant":   "{who} reached {row}, a row of the table {table} that is met at once.",
+	"lethality time":  "{who} earned a lethality of {value} min equivalent at {ref} of the {time} needed.",
+	"lethality logs":  "{who} earned a lethality of {value} of the {logs} log reductions needed.",
+	"cool closed":     "{who} took {value} from {start} to {to}, and {time} is allowed.",
+	"cool at once":    "{who} was at or below {to} when the clock started.",
+	"cool late":       "{who} was still above {to} after {value} from {start}, and {time} is allowed.",
+	"cool open":       "{who} was still above {to} when the history ended, {value} from {start}, and {time} is allowed, so it cannot be told.",
+	"cool cut":        "{who} was still above {to} when the next heating began, {value} from {start}, and {time} is allowed, so it cannot be told.",
+	"cool stage":      "{who} was not down to {to} for good when the stage {stage} ended, {value} from {start}.",
+	"cool not fallen": "{who} had not yet fallen to {start} when the history ended, so the clock never started and it cannot be told.",
+	"cool nowhere":    "No place was above the temperature at which the clock starts, so the limit does not apply.",
+	"heat closed":     "{who} took {value} to {to}, and {time} is allowed.",
+	"heat late":       "{who} had not reached {to} after {value}, and {time} is allowed.",
+	"heat open":       "{who} had not reached {to} when the history ended after {value}, and {time} is allowed, so it cannot be told.",
+	"heat stage":      "{who} had not reached {to} when the stage {stage} ended, after {value}.",
+	"heat nowhere":    "No place rose to the temperature at which the clock starts, so the limit does not apply.",
+	"band":            "{who} was between {from} and {to} for {value}, and {time} is allowed.",
+	"band again":      "{who} was between {from} and {to} more than once ({count} periods), and the limit allows one only.",
+	"stay above":      "{who} fell to {value}, and {level} must be kept.",
+	"stay below":      "{who} rose to {value}, and {level} must be kept.",
+	"out above":       "{who} was below {level} for {value}, and {time} is allowed.",
+	"out below":       "{who} was above {level} for {value}, and {time} is allowed.",
+	"out again":       "{who} was out of the limit {level} more than once ({count} periods), and the limit allows one only.",
+	"outside":         "{who} was between {from} and {to} for {value}, and no time there is allowed.",
+	"outside touch":   "{who} touched {from} or {to}, and the limit does not allow that.",
+	"outside never":   "{who} was never between {from} and {to}.",
+	"end above":       "{who} was at {value} at {when}, and at least {level} is needed.",
+	"end below":       "{who} was at {value} at {when}, and at most {level} is allowed.",
+	"end open":        "The history ended before {when}, so it cannot be told.",
+	"end nowhere":     "The clock of this limit never started, so the limit does not apply.",
+	"delay":           "{value} passed from the end of {first} to the start of {second}, and {time} is allowed.",
+	"delay late":      "{second} had not started {value} after the end of {first}, and {time} is allowed.",
+	"delay open":      "{second} had not started when the history ended, {value} after the end of {first}, and {time} is allowed, so it cannot be told.",
+	"duration least":  "{stage} lasted {value} of the {time} needed.",
+	"duration most":   "{stage} lasted {value}, and {time} is allowed.",
+	"falling":         "{who} rose by {value}, and {allowance} is allowed.",
+	"freeze":          "{who} was at or below {to} for {value} of the {second} needed, after {time} at or below {from}.",
+	"freeze first":    "{who} was never at or below {from} for {time}, so the second phase did not begin.",
+	"humidity":        "The stated relative humidity met {humidity} for {value} of the {need} needed.",
+	"humidity open":   "The relative humidity is not stated for the whole of the stages, so it cannot be told.",
+	"stated blank":    "Only you can answer this, and the answer is blank, so it cannot be told.",
+	"stated yes":      "Answered: {answer}.",
+	"stated no":       "Answered: {answer}.",
+	"stated text":     "Answered: {answer}; an answer that begins with yes or no decides, so it cannot be told.",
+
+	"who every":  "The least favourable place ({place})",
+	"who slow":   "The slowest place ({place})",
+	"who named":  "The {place}",
+	"who medium": "The surroundings",
+
+	"note again":     "Rose above {temp} again at {when}; the clock does not start anew.",
+	"note heatings":  "The process has {count} heatings separated by chilling; each is judged on its own, and the best counts.",
+	"note separated": "The time is the sum of periods with chilling in between.",
+	"note early":     "{share} % was earned on a slow way up or barely above the floor.",
+}
+
+// say fills a sentence.
+func say(key string, h holes) string {
+	s := words[key]
+	for k, v := range h {
+		s = strings.ReplaceAll(s, "{"+k+"}", v)
+	}
+	return s
+}
+
+// round writes x with the given decimals, rounded down (up < 0) or up (up > 0), without trailing zeros.
+func round(x float64, decimals int, up int) string {
+	f := math.Pow(10, float64(decimals))
+	y := x * f
+	// what differs from a round figure by less than the arithmetic can hold is that figure
+	if r := math.Round(y); math.Abs(r-y) < 1e-6 {
+		y = r
+	} else if up > 0 {
+		y = math.Ceil(y)
+	} else {
+		y = math.Floor(y)
+	}
+	y /= f
+	if y == 0 {
+		y = 0 // no minus zero
+	}
+	return strconv.FormatFloat(y, 'f', -1, 64)
+}
+
+// lasting writes a time in s as a person would, rounded as asked: 12.4 min, 8.5 s.
+func lasting(s float64, up int) string {
+	if math.Abs(s) < 60 {
+		return round(s, 1, up) + " s"
+	}
+	return round(s/60, 1, up) + " min"
+}
+
+// degrees writes a temperature, rounded as asked.
+func degrees(c float64, up int) string { return round(c, 1, up) + " °C" }
+
+// kelvinUp writes a difference, rounded up to two significant figures.
+func kelvinUp(k float64) string {
+	d := 2
+	if k != 0 {
+		d = max(0, 1-int(math.Floor(math.Log10(math.Abs(k)))))
+	}
+	return round(k, d, 1) + " K"
+}
+
+// clockTime writes an instant from the start of the chain: 3 h 05 min.
+func clockTime(s float64) string {
+	m := int(math.Floor(s/60 + 1e-9))
+	if m < 60 {
+		return fmt.Sprintf("%d min", m)
+	}
+	return fmt.Sprintf("%d h %02d min", m/60, m%60)
+}
+
+// figure is a number of the limit as typed, or as the program holds it.
+func (l *Limit) figure(column, held string) string {
+	if t := l.Typed[column]; t != "" {
+		return t
+	}
+	return held
+}
+
+// exactly writes a limit's own number without rounding.
+func exactly(x float64, unit string) string {
+	return strconv.FormatFloat(math.Round(x*1e6)/1e6, 'f', -1, 64) + " " + unit
+}
+
+// own are the limit's own figures, for every sentence.
+func (l *Limit) own() holes {
+	h := holes{}
+	put := func(hole, column string, x *float64, scale float64, unit string) {
+		if x != nil {
+			h[hole] = l.figure(column, exactly(*x/scale, unit))
+		}
+	}
+	put("from", "From", l.FromC, 1, "°C")
+	put("to", "To", l.ToC, 1, "°C")
+	put("time", "Time", l.TimeS, 60, "min")
+	put("second", "Second time", l.SecondS, 60, "min")
+	put("ref", "Reference temperature", l.ReferenceC, 1, "°C")
+	put("allowance", "Allowance", l.AllowanceK, 1, "K")
+	put("humidity", "Humidity", l.HumidityPc, 1, "%")
+	put("logs", "Log reductions", l.Logs, 1, "")
+	h["logs"] = strings.TrimSpace(h["logs"])
+	if l.FromC != nil {
+		h["level"] = h["from"]
+	} else {
+		h["level"] = h["to"]
+	}
+	return h
+}
+
+// sentence words a finding about places.
+func (v *view) sentence(f *Finding, o outcome, tail string) string {
+	h := v.l.own()
+	for k, x := range o.holes {
+		h[k] = x
+	}
+	switch name := strings.TrimSpace(v.l.Where.Name); {
+	case same(name, "medium"):
+		h["who"] = say("who medium", nil)
+	case name != "" && !same(name, "every point") && !same(name, "surface"):
+		h["who"] = say("who named", holes{"place": f.PlaceName})
+	case o.slow:
+		h["who"] = say("who slow", holes{"place": f.PlaceName})
+	default:
+		h["who"] = say("who every", holes{"place": f.PlaceName})
+	}
+	s := say(o.word, h)
+	if tail != "" {
+		s = strings.TrimSuffix(strings.TrimSuffix(s, "."), ", so it cannot be told") + tail
+	}
+	return s
+}
+
+// startWords says from what a clock ran.
+func (l *Limit) startWords() string {
+	switch c := l.Clock; {
+	case c.Start != nil:
+		return "the start of " + c.Start.Name
+	case c.End != nil:
+		return "the end of " + c.End.Name
+	case c.AtC != nil:
+		return l.figure("Clock starts", exactly(*c.AtC, "°C"))
+	case l.FromC != nil:
+		return l.figure("From", exactly(*l.FromC, "°C"))
+	}
+	return "the start"
+}
