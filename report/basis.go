@@ -245,12 +245,15 @@ func (x *sheet) readings() {
 		{title: say("col why"), wide: frameWide - 146}}, rows, small)
 }
 
+// changeKeys are the reasons to look at the process again, under "change " in words.
+var changeKeys = []string{"recipe", "size", "supplier", "equipment", "load", "setting", "limit", "measured", "deviation", "organism", "year"}
+
 // changes are the reasons to look at the process again, with boxes to tick.
 func (x *sheet) changes() {
 	d := x.doc
 	d.heading(say("changes title"), 0, 60)
 	d.text(say("changes note"))
-	for _, k := range []string{"recipe", "size", "supplier", "equipment", "load", "setting", "limit", "measured", "deviation", "organism", "year"} {
+	for _, k := range changeKeys {
 		d.item("☐", say("change "+k), body)
 	}
 }
@@ -273,13 +276,16 @@ func (x *sheet) deviation() {
 	x.signatures("sign decided", "sign checked")
 }
 
+// glossaryKeys are the words of the glossary, under "word " and "means " in words.
+var glossaryKeys = []string{"slowest", "met", "cannot tell", "margin", "clock", "place", "film", "set-point", "carry-over", "equivalent", "z", "conductivity", "record", "digest"}
+
 // glossary explains the words of theory in half a page.
 func (x *sheet) glossary() {
 	d := x.doc
 	const rows = 14
 	d.heading(say("glossary title"), 0, 100)
 	var p [][2]string
-	for _, k := range []string{"slowest", "met", "cannot tell", "margin", "clock", "place", "film", "set-point", "carry-over", "equivalent", "z", "conductivity", "record", "digest"} {
+	for _, k := range glossaryKeys {
 		p = append(p, [2]string{say("word " + k), say("means " + k)})
 	}
 	d.pairs(p[:rows], 40)

@@ -146,6 +146,9 @@ func needsMore(f *rules.Finding) bool {
 		return false
 	}
 	timed := l.TimeS != nil && *l.TimeS > 0
+	if f.Unit == "min" && l.CompareTime != rules.Usual {
+		return l.CompareTime == rules.AtLeast || l.CompareTime == rules.MoreThan
+	}
 	switch l.Kind.Name {
 	case "hold":
 		return timed || l.FromC != nil
@@ -155,8 +158,6 @@ func needsMore(f *rules.Finding) bool {
 		return l.TimeS == nil
 	case "by the end":
 		return l.FromC != nil
-	case "duration":
-		return l.CompareTime == rules.AtLeast || l.CompareTime == rules.MoreThan
 	}
 	return false
 }

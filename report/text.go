@@ -96,6 +96,8 @@ var textWords = map[string]string{
 	"known good":    "within the allowance",
 	"known bad":     "OUTSIDE THE ALLOWANCE: do not use these results",
 	"caution":       "Caution",
+	"changes":       "When to look at the process again",
+	"glossary":      "Words used",
 	"end":           "End of the report.",
 }
 
@@ -378,6 +380,7 @@ func (t *Text) Close() error {
 		return err
 	}
 	t.known()
+	t.closing()
 	t.put("\n")
 	t.line("end")
 	return t.buf.Flush()
@@ -465,6 +468,18 @@ func (t *Text) known() {
 			ok = textWords["known good"]
 		}
 		t.item(fmt.Sprintf(textWords["known one"], k.Name, bare6(k.Expected), bare6(k.Got), bare6(k.Allowance), k.Unit, ok, k.Source))
+	}
+}
+
+// closing is what stands at the end of every PDF: the reasons to look again, and the words.
+func (t *Text) closing() {
+	t.heading(1, "changes")
+	for _, k := range changeKeys {
+		t.item(say("change " + k))
+	}
+	t.heading(1, "glossary")
+	for _, k := range glossaryKeys {
+		t.line("item", say("word "+k), say("means "+k))
 	}
 }
 

@@ -8,6 +8,7 @@ import (
 	"testing"
 
 	"slowpoint/model/cell"
+	"slowpoint/rules"
 )
 
 func TestTextGolden(t *testing.T) {
@@ -115,6 +116,38 @@ func TestTemperature(t *testing.T) {
 		t.Run(c.name, func(t *testing.T) {
 			if c.got != c.want {
 				t.Errorf("%q, wanted %q", c.got, c.want)
+			}
+		})
+	}
+}
+
+// A result is rounded to the side that leaves less room.
+func TestQuantityIsRoundedToTheUnfavourableSide(t *testing.T) {
+	h := &Head{}
+	kind := func(name string) *rules.Kind { return &rules.Kind{Name: name} }
+	for _, c := range []struct {
+		name, unit string
+		value      float64
+		limit      rules.Limit
+		want       string
+	}{
+		{"minutes held: down", "min", 14.0987, rules.Limit{Kind: kind("hold"), FromC: ptr(70.), TimeS: ptr(120.)}, "14.0 min"},
+		{"minutes held below: down", "min", 14.0987, rules.Limit{Kind: kind("hold"), ToC: ptr(5.), TimeS: ptr(120.)}, "14.0 min"},
+		{"coldest of an instant: down", "°C", 71.99, rules.Limit{Kind: kind("hold"), FromC: ptr(70.), TimeS: ptr(0.)}, "71.9 °C (161.5 °F)"},
+		{"hottest of an instant: up", "°C", 4.01, rules.Limit{Kind: kind("hold"), ToC: ptr(5.), TimeS: ptr(0.)}, "4.1 °C (39.3 °F)"},
+		{"minutes of chilling: up", "min", 89.91, rules.Limit{Kind: kind("cool"), ToC: ptr(3.), TimeS: ptr(5400.)}, "90.0 min (1 h 30 min)"},
+		{"lethality: down", "log10", 6.509, rules.Limit{Kind: kind("lethality"), Logs: ptr(6.5)}, "6.5 log10"},
+		{"stay above: down", "°C", 63.09, rules.Limit{Kind: kind("stay above"), FromC: ptr(63.)}, "63.0 °C (145.5 °F)"},
+		{"minutes below it: up", "min", 3.01, rules.Limit{Kind: kind("stay above"), FromC: ptr(63.), TimeS: ptr(300.)}, "3.1 min"},
+		{"by the end, at most: up", "°C", 2.91, rules.Limit{Kind: kind("by the end"), ToC: ptr(3.)}, "3.0 °C (37.3 °F)"},
+		{"a duration of at least: down", "min", 45.99, rules.Limit{Kind: kind("duration"), TimeS: ptr(2700.), CompareTime: rules.AtLeast}, "45.9 min"},
+		{"a duration of at most: up", "min", 44.01, rules.Limit{Kind: kind("duration"), TimeS: ptr(2700.), CompareTime: rules.AtMost}, "44.1 min"},
+		{"rise: up", "K", 0.51, rules.Limit{Kind: kind("falling"), AllowanceK: ptr(1.)}, "0.6 °C (1.0 °F)"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			f := &rules.Finding{Limit: &c.limit, Unit: c.unit}
+			if got := h.quantity(f, &c.value, false); got != c.want {
+				t.Errorf("%v %s: %q, wanted %q", c.value, c.unit, got, c.want)
 			}
 		})
 	}
