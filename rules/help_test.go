@@ -92,9 +92,9 @@ func one(t testing.TB, l Limit, h *model.History) Finding {
 }
 
 // c, min and f make pointers: °C or K, minutes as seconds, °F as °C.
-func c(x float64) *float64   { return &x }
+func c(x float64) *float64    { return &x }
 func min_(x float64) *float64 { return c(60 * x) }
-func f(x float64) *float64   { return c((x - 32) / 1.8) }
+func f(x float64) *float64    { return c((x - 32) / 1.8) }
 
 // close compares a figure of a finding.
 func closeTo(t testing.TB, what string, got *float64, want, tol float64) {
