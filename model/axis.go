@@ -278,15 +278,16 @@ type film struct {
 	group int     // which medium; -1: none (insulated)
 }
 
+// wellMixed is an axis without extent.
+var wellMixed = &axisStep{rate: []float64{0}, b: []float64{1}, gUp: []float64{0}, gLo: []float64{0}}
+
 // step solves the axis for one step. alpha: diffusivity, m²/s; k: conductivity, W/(m·K).
-func (a *axis) step(p Properties, lo, up film) *axisStep {
+func (a *axis) step(mem *slab, p Properties, lo, up film) *axisStep {
 	n := a.n
-	s := &axisStep{rate: make([]float64, n), b: make([]float64, n*n)}
 	if a.kind == lumped {
-		s.b[0] = 1
-		s.gUp, s.gLo = []float64{0}, []float64{0}
-		return s
+		return wellMixed
 	}
+	s := &axisStep{rate: mem.take(n)}
 	scale := p.KWmK / (p.RhoKgM3 * p.CJkgK) / (a.radiusM * a.radiusM)
 	rho := func(f film) float64 {
 		if f.group < 0 {
@@ -301,28 +302,28 @@ func (a *axis) step(p Properties, lo, up film) *axisStep {
 	var g1, g2 []float64
 	if a.kind == planeFull {
 		var q1 []float64
-		d, q1, g1 = rankOne(d, a.low, rho(lo))
-		v := make([]float64, n)
+		d, q1, g1 = rankOne(mem, d, a.low, rho(lo))
+		v := mem.take(n)
 		for i := range v {
 			for m, t := range a.top {
 				v[i] += q1[m*n+i] * t
 			}
 		}
 		var q2 []float64
-		d, q2, g2 = rankOne(d, v, rho(up))
-		g := make([]float64, n)
+		d, q2, g2 = rankOne(mem, d, v, rho(up))
+		g := mem.take(n)
 		for i := range g {
 			for m := range g1 {
 				g[i] += q2[m*n+i] * g1[m]
 			}
 		}
 		g1 = g
-		q = multiply(n, multiply(n, q, q1), q2)
+		q = multiply(mem, n, multiply(mem, n, q, q1), q2)
 	} else {
 		var q2 []float64
-		d, q2, g2 = rankOne(d, a.top, rho(up))
-		q = multiply(n, q, q2)
-		g1 = make([]float64, n)
+		d, q2, g2 = rankOne(mem, d, a.top, rho(up))
+		q = multiply(mem, n, q, q2)
+		g1 = mem.take(n)
 	}
 	s.b = q
 	for i := range d {
@@ -338,8 +339,8 @@ func (a *axis) step(p Properties, lo, up film) *axisStep {
 const heldBiot = 1e12
 
 // multiply gives the product of two n×n matrices.
-func multiply(n int, a, b []float64) []float64 {
-	c := make([]float64, n*n)
+func multiply(mem *slab, n int, a, b []float64) []float64 {
+	c := mem.take(n * n)
 	for i := 0; i < n; i++ {
 		ci := c[i*n : i*n+n]
 		for k := 0; k < n; k++ {

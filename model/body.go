@@ -116,10 +116,17 @@ func (b *body) polish(s snapshot, node int, sign float64) extreme {
 	g := b.index(node)
 	var r, phi, dphi [maxDegrees]float64
 	stride := [3]int{len(b.nodes.x[1]) * len(b.nodes.x[2]), len(b.nodes.x[2]), 1}
+	var done [3]bool
+	for a := range g {
+		done[a] = b.settled(node, g[a], a, stride[a], sign)
+	}
+	if done == [3]bool{true, true, true} {
+		return e
+	}
 	for sweep := 0; sweep < 3; sweep++ {
 		moved := false
 		for a := range g {
-			if b.kinds[a] == lumped {
+			if sweep == 0 && done[a] || b.kinds[a] == lumped {
 				continue
 			}
 			xs := b.nodes.x[a]
@@ -141,7 +148,7 @@ func (b *body) polish(s snapshot, node int, sign float64) extreme {
 				}
 				return sign * d
 			}
-			x := zeroOfSlope(slope, xs[lo], xs[hi], e.x[a])
+			x := zeroOfSlope(slope, xs[lo], e.x[a], xs[hi])
 			bs.values(x, phi[:n], nil)
 			c := 0.0
 			for m := 0; m < n; m++ {
@@ -159,24 +166,56 @@ func (b *body) polish(s snapshot, node int, sign float64) extreme {
 	return e
 }
 
-// zeroOfSlope finds the minimum between lo and hi, where slope turns from negative to positive, or the lower end; stay if there is none.
-func zeroOfSlope(slope func(float64) float64, lo, hi, stay float64) float64 {
-	fl, fh := slope(lo), slope(hi)
-	switch {
-	case fl >= 0 && fh >= 0:
-		return lo
-	case fl <= 0 && fh <= 0:
-		return hi
-	case fl > 0: // a maximum between: an end is lowest, and the node was the lowest of the three
-		return stay
+// settled tells from the three nodes at an end of an axis whether the extreme lies at that end: a parabola through them,
+// in x² at a centre of symmetry, falls towards it clearly.
+func (b *body) settled(node, g, a, stride int, sign float64) bool {
+	if b.kinds[a] == lumped {
+		return true
 	}
-	for it := 0; it < 40 && hi-lo > 1e-7; it++ { // Illinois form of regula falsi (Dowell & Jarratt 1971, BIT 11:168-174)
+	xs := b.nodes.x[a]
+	if g != 0 && g != len(xs)-1 {
+		return false
+	}
+	i, j := 1, 2
+	if g != 0 {
+		i, j = g-1, g-2
+	}
+	f0 := sign * b.buf[node]
+	f1, f2 := sign*b.buf[node+(i-g)*stride], sign*b.buf[node+(j-g)*stride]
+	x1, x2 := math.Abs(xs[i]-xs[g]), math.Abs(xs[j]-xs[g])
+	if g == 0 && b.kinds[a] != planeFull {
+		x1, x2 = x1*x1, x2*x2
+	}
+	rise, next := (f1-f0)/x1, (f2-f1)/(x2-x1)
+	slope := rise - (next-rise)*x1/x2
+	return f1-f0 > flatK && slope > 0.25*rise
+}
+
+// zeroOfSlope finds the minimum beside mid, the lowest of three nodes: where slope turns from negative to positive.
+func zeroOfSlope(slope func(float64) float64, lo, mid, hi float64) float64 {
+	fm := slope(mid)
+	fl, fh := fm, fm
+	switch {
+	case fm < 0 && mid < hi:
+		lo = mid
+		if fh = slope(hi); fh <= 0 {
+			return hi
+		}
+	case fm > 0 && mid > lo:
+		hi = mid
+		if fl = slope(lo); fl >= 0 {
+			return lo
+		}
+	default:
+		return mid
+	}
+	for it := 0; it < 40 && hi-lo > 1e-5; it++ { // Illinois form of regula falsi (Dowell & Jarratt 1971, BIT 11:168-174)
 		x := lo - fl*(hi-lo)/(fh-fl)
 		if !(x > lo && x < hi) {
 			x = (lo + hi) / 2
 		}
 		f := slope(x)
-		if math.Abs(f) < 1e-9 {
+		if math.Abs(f) < 1e-6 {
 			return x
 		}
 		if f < 0 {
@@ -254,7 +293,7 @@ func (h *History) look() *Scan {
 		h.field.at(t).grid(b.buf)
 		r := h.hull[spanAt(h.Spans, t)]
 		for i, c := range b.buf {
-			sc.C[i][k] = math.Max(r[0], math.Min(r[1], c))
+			sc.C[i][k] = clamp(c, r)
 		}
 	}
 	return sc

@@ -1,6 +1,9 @@
 package model
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // A field is the temperature of every place in the food over the whole chain, in one of two forms: tensor, or product of axes.
 // Places are given in the body's own coordinates, one an axis: 0…1 from the centre to the face, or -1…1 between two faces.
@@ -48,6 +51,7 @@ type tensor struct {
 	steps []*tensorStep
 	segs  []tensorSeg
 	now   tensorShot
+	mem   slab
 }
 
 type tensorStep struct {
@@ -73,12 +77,25 @@ type tensorSeg struct {
 	c      []float64 // what decays, by mode, at t0
 }
 
+// slab hands out zeroed slices from large pieces, since a field is made of very many small ones.
+type slab []float64
+
+func (s *slab) take(n int) []float64 {
+	if len(*s) < n {
+		*s = make([]float64, max(n, 2048))
+	}
+	out := (*s)[:n:n]
+	*s = (*s)[n:]
+	return out
+}
+
 func (f *tensor) size() int { return f.axes[0].n * f.axes[1].n * f.axes[2].n }
 
 // newTensor starts a field at one temperature.
 func newTensor(axes [3]*axis, nd *nodes, startC float64) *tensor {
 	f := &tensor{axes: axes, nodes: nd, start: startC}
 	f.now.f = f
+	f.now.last = make([]int, axes[0].n*axes[1].n)
 	return f
 }
 
@@ -87,12 +104,12 @@ func (f *tensor) run(cs *chainStep) {
 	st := &tensorStep{extra: cs.lumpW}
 	ax := f.axes
 	for a := range ax {
-		st.ax[a] = ax[a].step(cs.props, cs.lo[a], cs.up[a])
+		st.ax[a] = ax[a].step(&f.mem, cs.props, cs.lo[a], cs.up[a])
 		st.e0[a] = st.ax[a].b[:ax[a].n]
 	}
 	n := f.size()
 	for g := range cs.media {
-		r := response{make([]float64, n), make([]float64, n)}
+		r := response{f.mem.take(n), f.mem.take(n)}
 		for a := range ax {
 			if cs.lo[a].group == g {
 				addOuter(r.s, st, a, st.ax[a].gLo)
@@ -115,8 +132,17 @@ func (f *tensor) run(cs *chainStep) {
 		st.groups = append(st.groups, r)
 		st.meanS, st.meanW = append(st.meanS, st.average(r.s)), append(st.meanW, st.average(r.w))
 	}
-	now := f.carry(st) // modes of this step
+	f.steps = append(f.steps, st)
+	f.segments(cs, st, f.carry(st))
+}
+
+// segments appends the stretches between the knots of the media; now holds the modes at the start of the step.
+func (f *tensor) segments(cs *chainStep, st *tensorStep, now []float64) {
+	n, m := f.size(), len(cs.media)
 	t0 := f.end()
+	f.segs = slices.Grow(f.segs, len(cs.knots))
+	var decay []float64 // of every mode over one stretch of length long
+	long := math.NaN()
 	for k, from := range cs.knots {
 		to := cs.durS
 		if k+1 < len(cs.knots) {
@@ -125,30 +151,51 @@ func (f *tensor) run(cs *chainStep) {
 		if to <= from && k > 0 {
 			break
 		}
-		sg := tensorSeg{t0: t0 + from, t1: t0 + to, step: st}
+		sg := tensorSeg{t0: t0 + from, t1: t0 + to, step: st, level: f.mem.take(m), slope: f.mem.take(m)}
 		for g := range cs.media {
-			m := &cs.media[g]
-			a, b := lineAt(m.TimesS, m.C, from), lineAt(m.TimesS, m.C, to)
-			slope := 0.0
+			a, b := cs.media[g].at(from), cs.media[g].at(to)
+			sg.level[g] = a
 			if to > from {
-				slope = (b - a) / (to - from)
+				sg.slope[g] = (b - a) / (to - from)
 			}
-			sg.level, sg.slope = append(sg.level, a), append(sg.slope, slope)
 		}
-		c := now
 		for g, r := range st.groups {
-			for i := range c {
-				c[i] -= r.s[i]*sg.level[g] - r.w[i]*sg.slope[g]
+			level, slope := sg.level[g], sg.slope[g]
+			for i, s := range r.s {
+				now[i] -= s*level - r.w[i]*slope
 			}
 		}
-		sg.c = c
+		sg.c = now
 		f.segs = append(f.segs, sg)
-		if to < cs.durS {
-			now = make([]float64, n)
-			f.modes(&f.segs[len(f.segs)-1], to-from, now)
+		if to >= cs.durS {
+			break
+		}
+		if d := to - from; d != long { // courses mostly have even steps
+			long = d
+			if decay == nil {
+				decay = make([]float64, n)
+			}
+			st.eachRate(func(i int, rate float64) { decay[i] = math.Exp(-rate * d) })
+		}
+		now = f.mem.take(n)
+		for i, c := range sg.c {
+			now[i] = c * decay[i]
+		}
+		for g, r := range st.groups {
+			level, slope := sg.level[g]+sg.slope[g]*long, sg.slope[g]
+			for i, s := range r.s {
+				now[i] += s*level - r.w[i]*slope
+			}
 		}
 	}
-	f.steps = append(f.steps, st)
+}
+
+// at is the medium at t seconds from the start of the step.
+func (m *Course) at(t float64) float64 {
+	if len(m.C) == 1 {
+		return m.C[0]
+	}
+	return lineAt(m.TimesS, m.C, t)
 }
 
 // end is the end of the last segment.
@@ -205,7 +252,7 @@ func (st *tensorStep) eachRate(do func(i int, rate float64)) {
 // carry turns the field at the end of the last segment into modes of the next step.
 func (f *tensor) carry(st *tensorStep) []float64 {
 	n := f.size()
-	now := make([]float64, n)
+	now := f.mem.take(n)
 	if len(f.segs) == 0 {
 		addOuter(now, st, 0, st.e0[0])
 		for i := range now {
@@ -215,10 +262,14 @@ func (f *tensor) carry(st *tensorStep) []float64 {
 	}
 	sg := &f.segs[len(f.segs)-1]
 	f.modes(sg, sg.t1-sg.t0, now)
-	tmp := make([]float64, n)
+	tmp := f.mem.take(n)
 	var p [3][]float64
 	for a := range f.axes { // from modes of the old step to modes of the new one
-		p[a] = project(f.axes[a].n, sg.step.ax[a].b, st.ax[a].b)
+		p[a] = project(&f.mem, f.axes[a].n, sg.step.ax[a].b, st.ax[a].b)
+	}
+	if f.single() {
+		along(now, tmp, p[0], 1, n, 1)
+		return tmp
 	}
 	n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
 	along(now, tmp, p[0], 1, n0, n1*n2)
@@ -227,9 +278,12 @@ func (f *tensor) carry(st *tensorStep) []float64 {
 	return tmp
 }
 
+// single tells whether there is one axis only.
+func (f *tensor) single() bool { return f.axes[1].n == 1 && f.axes[2].n == 1 }
+
 // project gives newᵀ·old: n×n, row = new mode.
-func project(n int, old, new []float64) []float64 {
-	p := make([]float64, n*n)
+func project(mem *slab, n int, old, new []float64) []float64 {
+	p := mem.take(n * n)
 	for m := 0; m < n; m++ {
 		for i := 0; i < n; i++ {
 			if f := new[m*n+i]; f != 0 {
@@ -264,11 +318,14 @@ func along(in, out, p []float64, outer, n, inner int) {
 	}
 }
 
+// gone is the exponent beyond which a mode is left out: e^-27 of 200 K is 4e-10 K.
+const gone = 27
+
 // decays fills e with exp(-rate·tau) and tells how many are worth keeping.
 func decays(rate []float64, tau float64, e []float64) int {
 	for i, r := range rate {
 		x := r * tau
-		if x > 45 { // below 3e-20
+		if x > gone {
 			if i > 0 {
 				return i
 			}
@@ -296,6 +353,13 @@ func (f *tensor) modes(sg *tensorSeg, tau float64, out []float64) {
 
 // decaying fills out with what still decays and tells the number of modes by axis that are worth looking at; the others are not touched.
 func (f *tensor) decaying(sg *tensorSeg, tau float64, out []float64) (keep [3]int) {
+	if f.single() && sg.step.extra == 0 {
+		k := decays(sg.step.ax[0].rate, tau, out)
+		for i, c := range sg.c[:k] {
+			out[i] *= c
+		}
+		return [3]int{k, 1, 1}
+	}
 	var e [3][maxDegrees]float64
 	for a := range keep {
 		keep[a] = decays(sg.step.ax[a].rate, tau, e[a][:f.axes[a].n])
@@ -304,12 +368,18 @@ func (f *tensor) decaying(sg *tensorSeg, tau float64, out []float64) (keep [3]in
 		e[0][0] *= math.Exp(-sg.step.extra * tau)
 	}
 	n1, n2 := f.axes[1].n, f.axes[2].n
+	r0, r1, r2 := sg.step.ax[0].rate, sg.step.ax[1].rate, sg.step.ax[2].rate
 	for i := 0; i < keep[0]; i++ {
 		for j := 0; j < keep[1]; j++ {
 			xy := e[0][i] * e[1][j]
 			at := (i*n1 + j) * n2
-			c, o := sg.c[at:at+keep[2]], out[at:at+keep[2]]
-			for k, z := range e[2][:keep[2]] {
+			left, k := gone-(r0[i]+r1[j])*tau, keep[2]
+			for k > 0 && r2[k-1]*tau > left {
+				k--
+			}
+			f.now.last[i*n1+j] = k
+			c, o := sg.c[at:at+k], out[at:at+k]
+			for k, z := range e[2][:k] {
 				o[k] = c[k] * xy * z
 			}
 		}
@@ -421,21 +491,21 @@ type tensorShot struct {
 	sg     *tensorSeg
 	tau    float64
 	keep   [3]int
-	amp    []float64 // what decays
-	all    []float64 // everything, made when asked for
-	full   bool
+	amp    []float64  // what decays
+	all    []float64  // what the media hold, made when asked for
+	of     *tensorSeg // the segment that all belongs to
+	last   []int      // by the first two axes: how many modes of the third are worth looking at
 	b1, b2 []float64
 }
 
 func (f *tensor) at(t float64) snapshot {
 	s := &f.now
 	if s.amp == nil {
-		s.amp, s.all = make([]float64, f.size()), make([]float64, f.size())
+		s.amp = make([]float64, f.size())
 	}
 	s.sg = &f.segs[f.segAt(t)]
 	s.tau = math.Min(math.Max(t-s.sg.t0, 0), s.sg.t1-s.sg.t0)
 	s.keep = f.decaying(s.sg, s.tau, s.amp)
-	s.full = false
 	return s
 }
 
@@ -445,7 +515,7 @@ func (f *tensor) gridValues(st *tensorStep) {
 		return
 	}
 	for a := range f.axes {
-		st.gridB[a] = nodeModes(f.axes[a], f.nodes, a, st.ax[a].b)
+		st.gridB[a] = nodeModes(&f.mem, f.axes[a], f.nodes, a, st.ax[a].b)
 	}
 	var whole [3]int
 	for a := range whole {
@@ -453,17 +523,17 @@ func (f *tensor) gridValues(st *tensorStep) {
 	}
 	m := f.nodes.count()
 	for _, r := range st.groups {
-		s, w := make([]float64, m), make([]float64, m)
-		f.now.contract(r.s, whole, st, s)
-		f.now.contract(r.w, whole, st, w)
+		s, w := f.mem.take(m), f.mem.take(m)
+		f.now.contract(r.s, whole, nil, st, s)
+		f.now.contract(r.w, whole, nil, st, w)
 		st.steady, st.creep = append(st.steady, s), append(st.creep, w)
 	}
 }
 
 // nodeModes gives the modes of one axis of a step at its nodes.
-func nodeModes(ax *axis, nd *nodes, a int, b []float64) []float64 {
+func nodeModes(mem *slab, ax *axis, nd *nodes, a int, b []float64) []float64 {
 	n := ax.n
-	out := make([]float64, len(nd.x[a])*n)
+	out := mem.take(len(nd.x[a]) * n)
 	for g := range nd.x[a] {
 		o := out[g*n : g*n+n]
 		for m, f := range nd.phi[a][g*n : g*n+n] {
@@ -477,15 +547,11 @@ func nodeModes(ax *axis, nd *nodes, a int, b []float64) []float64 {
 
 func (nd *nodes) count() int { return len(nd.x[0]) * len(nd.x[1]) * len(nd.x[2]) }
 
-// contract adds up modes to temperatures at all nodes, the first keep modes of each axis only.
-func (s *tensorShot) contract(amp []float64, keep [3]int, st *tensorStep, out []float64) {
+// contract adds up modes to temperatures at all nodes, the first keep modes of each axis only, and of the third axis the first last.
+func (s *tensorShot) contract(amp []float64, keep [3]int, last []int, st *tensorStep, out []float64) {
 	f := s.f
 	n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
 	g0, g1, g2 := len(f.nodes.x[0]), len(f.nodes.x[1]), len(f.nodes.x[2])
-	if n0 == 1 && n1 == 1 && n2 == 1 {
-		out[0] = amp[0] * st.gridB[0][0] * st.gridB[1][0] * st.gridB[2][0]
-		return
-	}
 	if g1 == 1 && g2 == 1 { // one axis
 		for g := 0; g < g0; g++ {
 			sum := 0.0
@@ -507,11 +573,15 @@ func (s *tensorShot) contract(amp []float64, keep [3]int, st *tensorStep, out []
 	b1, b2 := s.b1[:need1], s.b2[:need2]
 	for i := 0; i < keep[0]; i++ {
 		for j := 0; j < keep[1]; j++ {
-			a := amp[(i*n1+j)*n2 : (i*n1+j)*n2+keep[2]]
+			k := keep[2]
+			if last != nil {
+				k = last[i*n1+j]
+			}
+			a := amp[(i*n1+j)*n2 : (i*n1+j)*n2+k]
 			o := b1[(i*n1+j)*g2 : (i*n1+j+1)*g2]
 			for g := range o {
 				sum := 0.0
-				for k, v := range st.gridB[2][g*n2 : g*n2+keep[2]] {
+				for k, v := range st.gridB[2][g*n2 : g*n2+k] {
 					sum += a[k] * v
 				}
 				o[g] = sum
@@ -525,6 +595,9 @@ func (s *tensorShot) contract(amp []float64, keep [3]int, st *tensorStep, out []
 				o[k] = 0
 			}
 			for j, v := range st.gridB[1][g*n1 : g*n1+keep[1]] {
+				if last != nil && last[i*n1+j] == 0 {
+					break
+				}
 				for k, x := range b1[(i*n1+j)*g2 : (i*n1+j+1)*g2] {
 					o[k] += v * x
 				}
@@ -548,7 +621,7 @@ func (s *tensorShot) contract(amp []float64, keep [3]int, st *tensorStep, out []
 func (s *tensorShot) grid(out []float64) {
 	st := s.sg.step
 	s.f.gridValues(st)
-	s.contract(s.amp, s.keep, st, out)
+	s.contract(s.amp, s.keep, s.last, st, out)
 	for g := range st.groups {
 		level, slope := s.sg.level[g]+s.sg.slope[g]*s.tau, s.sg.slope[g]
 		for i, v := range st.steady[g] {
@@ -557,11 +630,28 @@ func (s *tensorShot) grid(out []float64) {
 	}
 }
 
-// whole makes all modes at the instant.
-func (s *tensorShot) whole() []float64 {
-	if !s.full {
-		s.f.modes(s.sg, s.tau, s.all)
-		s.full = true
+// resting gives all modes of what the media hold at the instant.
+func (s *tensorShot) resting() []float64 {
+	st := s.sg.step
+	moving := false
+	for _, x := range s.sg.slope {
+		moving = moving || x != 0
+	}
+	if s.all == nil {
+		s.all = make([]float64, s.f.size())
+	}
+	if s.of == s.sg && !moving {
+		return s.all
+	}
+	s.of = s.sg
+	for i := range s.all {
+		s.all[i] = 0
+	}
+	for g, r := range st.groups {
+		level, slope := s.sg.level[g]+s.sg.slope[g]*s.tau, s.sg.slope[g]
+		for i, v := range r.s {
+			s.all[i] += v*level - r.w[i]*slope
+		}
 	}
 	return s.all
 }
@@ -577,29 +667,42 @@ func (s *tensorShot) slice(axis int, x coord, out []float64) {
 		}
 	}
 	var q [maxDegrees]float64
-	all := s.whole()
-	i := 0
-	for a := 0; a < n[0]; a++ {
-		for b := 0; b < n[1]; b++ {
-			row := all[i : i+n[2]]
-			i += n[2]
-			if axis == 2 {
-				xy := v[0][a] * v[1][b]
-				for k, c := range row {
-					q[k] += xy * c
+	sumUp := func(amp []float64, keep [3]int, last []int) {
+		for a := 0; a < keep[0]; a++ {
+			for b := 0; b < keep[1]; b++ {
+				end := keep[2]
+				if last != nil {
+					end = last[a*n[1]+b]
 				}
-				continue
-			}
-			dot := 0.0
-			for k, z := range v[2][:n[2]] {
-				dot += row[k] * z
-			}
-			if axis == 0 {
-				q[a] += dot * v[1][b]
-			} else {
-				q[b] += dot * v[0][a]
+				at := (a*n[1] + b) * n[2]
+				row := amp[at : at+end]
+				if axis == 2 {
+					xy := v[0][a] * v[1][b]
+					for k, c := range row {
+						q[k] += xy * c
+					}
+					continue
+				}
+				dot := 0.0
+				for k, c := range row {
+					dot += c * v[2][k]
+				}
+				if axis == 0 {
+					q[a] += dot * v[1][b]
+				} else {
+					q[b] += dot * v[0][a]
+				}
 			}
 		}
+	}
+	if f.single() {
+		copy(q[:], s.amp[:s.keep[0]])
+		for i, c := range s.resting() {
+			q[i] += c
+		}
+	} else {
+		sumUp(s.amp, s.keep, s.last)
+		sumUp(s.resting(), n, nil)
 	}
 	toPolynomials(n[axis], st.ax[axis].b, q[:], out)
 }
@@ -617,17 +720,30 @@ func toPolynomials(n int, b, q, out []float64) {
 
 func (s *tensorShot) mean() float64 {
 	f, st := s.f, s.sg.step
+	if f.single() {
+		sum := 0.0
+		for i, e := range st.e0[0][:s.keep[0]] {
+			sum += s.amp[i] * e
+		}
+		return sum + s.steadyMean()
+	}
 	n1, n2 := f.axes[1].n, f.axes[2].n
 	sum := 0.0
 	for i := 0; i < s.keep[0]; i++ {
 		for j := 0; j < s.keep[1]; j++ {
 			xy := st.e0[0][i] * st.e0[1][j]
 			at := (i*n1 + j) * n2
-			for k, z := range st.e0[2][:s.keep[2]] {
+			for k, z := range st.e0[2][:s.last[i*n1+j]] {
 				sum += s.amp[at+k] * xy * z
 			}
 		}
 	}
+	return sum + s.steadyMean()
+}
+
+// steadyMean is the mean of what the media hold.
+func (s *tensorShot) steadyMean() float64 {
+	st, sum := s.sg.step, 0.0
 	for g := range st.groups {
 		level, slope := s.sg.level[g]+s.sg.slope[g]*s.tau, s.sg.slope[g]
 		sum += st.meanS[g]*level - st.meanW[g]*slope

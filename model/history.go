@@ -40,7 +40,7 @@ type History struct {
 	HumidityPc func(t float64) float64
 
 	Points []Point // "centre" first, then the user's
-	ErrorK float64 // honest estimate of the largest error at any place, from a minute after each change of surroundings
+	ErrorK float64 // honest estimate of the largest error at any place, from half a minute after each change of surroundings (sooner for small foods)
 	Method string  // in words, for the report
 	// Bound says in words why temperatures are bounds from BoundFromS on (a chill medium raised to the freezing point:
 	// the true food is at or below them until it freezes); "" if they are not.

@@ -2,6 +2,7 @@ package model
 
 import (
 	"encoding/csv"
+	"fmt"
 	"math"
 	"os"
 	"path/filepath"
@@ -70,7 +71,7 @@ func uniform(kind axisKind, radiusM, startC float64) *oneAxis {
 // run lets t seconds of a step pass with a film h (+Inf: held) at a medium that starts at mediumC and rises by riseKs K/s; food gives the
 // properties. It returns the modes and their amplitudes' deviation from the state that the medium would hold.
 func (o *oneAxis) run(food Properties, h, mediumC, riseKs, t float64) (s *axisStep, amplitude []float64) {
-	s = o.step(food, film{group: -1}, film{u: h})
+	s = o.step(new(slab), food, film{group: -1}, film{u: h})
 	amplitude = make([]float64, o.n)
 	o.c[0] -= mediumC
 	for i := range amplitude {
@@ -307,6 +308,138 @@ func TestPenetration(t *testing.T) {
 		closeTo(t, r["geometry"]+" Fo "+r["Fo"]+" flux", 1/math.Sqrt(math.Pi*fo)/flux-1, want, 0.06*want)
 		if r["theta_centre"] != "" {
 			closeTo(t, r["geometry"]+" centre", o.at(0), number(t, r["theta_centre"]), 0.6e-5)
+		}
+	}
+}
+
+// The error that a history states is honest: the true error, held against all functions there are, is at most twice that and 0.002 K, at
+// every place from a minute after each change on. And it is useful: no larger than the accuracy promised for 1, 2 and 3 axes.
+func TestStatedErrorIsHonest(t *testing.T) {
+	promised := map[*Shape]float64{Slab: 0.005, Cylinder: 0.005, Sphere: 0.005, ShortCylinder: 0.01, Bar: 0.01, Brick: 0.02}
+	for _, shape := range []*Shape{Slab, Cylinder, Sphere, ShortCylinder, Bar, Brick} {
+		t.Run(shape.Name, func(t *testing.T) {
+			worst, where := 0.0, ""
+			for _, r := range []float64{0.01, 0.02, 0.04, 0.08, 0.15} {
+				for _, h := range []float64{5, 25, 100, 500, 3000, math.Inf(1)} {
+					axes := bodyAxes(shape, r)
+					p := Product{Shape: shape, StartC: 5, Food: &Material{Name: "test", Source: "input of the test", Props: func(float64) Properties { return testFood }},
+						Size: Size{ThicknessM: 2 * r, DiameterM: 2 * r, WidthM: 2.4 * r, LengthM: 3.2 * r}}
+					e := Exposure{Surface: Film, FilmW: &h, Medium: Course{TimesS: []float64{0}, C: []float64{160}}}
+					if math.IsInf(h, 1) {
+						e.Surface, e.FilmW = Held, nil
+					}
+					hist, err := Solve(p, []Step{{Stage: Cook, DurationS: 3600, Exposure: e}}, Options{})
+					if err != nil {
+						t.Fatal(err)
+					}
+					off := 0.0
+					for _, at := range []float64{60, 90, 150, 300, 900, 3600} {
+						off = math.Max(off, trueError(hist, axes, h, at))
+					}
+					name := fmt.Sprintf("half thickness or radius %g m, film %g W/(m²·K)", r, h)
+					if off > 2*hist.ErrorK+0.002 {
+						t.Errorf("%s: error %.4f K, stated %.4f K", name, off, hist.ErrorK)
+					}
+					if off > promised[shape] || hist.ErrorK > promised[shape] {
+						t.Errorf("%s: error %.4f K, stated %.4f K, promised %g K", name, off, hist.ErrorK, promised[shape])
+					}
+					if off > worst {
+						worst, where = off, name
+					}
+				}
+			}
+			t.Logf("largest error %.4f K (%s)", worst, where)
+		})
+	}
+}
+
+// bodyAxis is an axis of a body and the coordinate of a place that goes with it.
+type bodyAxis struct {
+	kind    axisKind
+	radiusM float64
+	along   func(*Place) *float64
+}
+
+// bodyAxes takes the body of TestStatedErrorIsHonest apart.
+func bodyAxes(shape *Shape, r float64) []bodyAxis {
+	up := func(p *Place) *float64 { return &p.UpM }
+	across := func(p *Place) *float64 { return &p.AcrossM }
+	along := func(p *Place) *float64 { return &p.AlongM }
+	switch shape {
+	case Slab:
+		return []bodyAxis{{planeHalf, r, up}}
+	case Cylinder:
+		return []bodyAxis{{radial, r, up}}
+	case Sphere:
+		return []bodyAxis{{spherical, r, up}}
+	case ShortCylinder:
+		return []bodyAxis{{planeHalf, 1.6 * r, up}, {radial, r, across}}
+	case Bar:
+		return []bodyAxis{{planeHalf, r, up}, {planeHalf, 1.2 * r, across}}
+	}
+	return []bodyAxis{{planeHalf, r, up}, {planeHalf, 1.2 * r, across}, {planeHalf, 1.6 * r, along}}
+}
+
+// trueError is the largest difference, K, of a history of one step from 5 °C at 160 °C from the product of its axes with all functions.
+func trueError(h *History, axes []bodyAxis, filmW, at float64) float64 {
+	const n = 9 // places an axis, crowded towards the face
+	theta := make([][n]float64, len(axes))
+	for a, x := range axes {
+		o := uniform(x.kind, x.radiusM, 1)
+		o.run(testFood, filmW, 0, 0, at)
+		for i := range theta[a] {
+			theta[a][i] = o.at(math.Sin(math.Pi / 2 * float64(i) / (n - 1)))
+		}
+	}
+	worst := 0.0
+	for i := range int(math.Pow(n, float64(len(axes)))) {
+		product, p := 1.0, Place{}
+		for a, x := range axes {
+			j := i % n
+			i /= n
+			product *= theta[a][j]
+			*x.along(&p) = x.radiusM * math.Sin(math.Pi/2*float64(j)/(n-1))
+		}
+		worst = math.Max(worst, math.Abs(h.At(p, at)-(160-155*product)))
+	}
+	return worst
+}
+
+// The same in the step after a cook: the field to begin with is no longer uniform.
+func TestStatedErrorIsHonestInTheNextStep(t *testing.T) {
+	for _, shape := range []*Shape{Slab, Cylinder, Sphere} {
+		for _, r := range []float64{0.01, 0.03, 0.07, 0.1, 0.15} {
+			for _, h := range []float64{5, 25, 100, 3000} {
+				rest, chill := 8., 40.
+				film := func(w *float64, c float64) Exposure {
+					return Exposure{Surface: Film, FilmW: w, Medium: Course{TimesS: []float64{0}, C: []float64{c}}}
+				}
+				p := Product{Shape: shape, StartC: 5, Food: &Material{Name: "test", Source: "input of the test", Props: func(float64) Properties { return testFood }},
+					Size: Size{ThicknessM: 2 * r, DiameterM: 2 * r}}
+				hist, err := Solve(p, []Step{{Stage: Cook, DurationS: 3000, Exposure: film(&h, 160)}, {Stage: Rest, DurationS: 600, Exposure: film(&rest, 22)},
+					{Stage: Cool, DurationS: 3000, Exposure: film(&chill, 2)}}, Options{})
+				if err != nil {
+					t.Fatal(err)
+				}
+				off := 0.0
+				for _, after := range []float64{60, 120, 300, 600} {
+					o := uniform(bodyAxes(shape, r)[0].kind, r, 5)
+					o.run(testFood, h, 160, 0, 3000)
+					o.run(testFood, rest, 22, 0, after)
+					for x := 0.; x <= 1; x += 1. / 16 {
+						off = math.Max(off, math.Abs(hist.At(Place{UpM: x * r}, 3000+after)-o.at(x)))
+					}
+					if after == 600 {
+						o.run(testFood, chill, 2, 0, 60)
+						for x := 0.; x <= 1; x += 1. / 16 {
+							off = math.Max(off, math.Abs(hist.At(Place{UpM: x * r}, 3660)-o.at(x)))
+						}
+					}
+				}
+				if off > 2*hist.ErrorK+0.002 || off > 0.005 || hist.ErrorK > 0.005 {
+					t.Errorf("%s, half thickness or radius %g m, film %g W/(m²·K): error %.4f K, stated %.4f K, promised 0.005", shape.Name, r, h, off, hist.ErrorK)
+				}
+			}
 		}
 	}
 }

@@ -11,6 +11,7 @@ type product struct {
 	start float64
 	steps []*productStep
 	now   productShot
+	mem   slab
 }
 
 type productStep struct {
@@ -58,13 +59,13 @@ func (f *product) run(cs *chainStep) {
 	}
 	st.t1 = st.t0 + cs.durS
 	for a := range f.axes {
-		st.ax[a] = f.axes[a].step(cs.props, cs.lo[a], cs.up[a])
+		st.ax[a] = f.axes[a].step(&f.mem, cs.props, cs.lo[a], cs.up[a])
 		st.e0[a] = st.ax[a].b[:f.axes[a].n]
 	}
 	if last != nil {
 		var p [3][]float64
 		for a := range f.axes {
-			p[a] = project(f.axes[a].n, last.ax[a].b, st.ax[a].b)
+			p[a] = project(&f.mem, f.axes[a].n, last.ax[a].b, st.ax[a].b)
 		}
 		for _, old := range last.terms {
 			t := productTerm{weight: old.weight}
@@ -72,7 +73,7 @@ func (f *product) run(cs *chainStep) {
 				n := f.axes[a].n
 				var e [maxDegrees]float64
 				keep := decays(last.ax[a].rate, last.t1-last.t0, e[:n])
-				t.x[a] = make([]float64, n)
+				t.x[a] = f.mem.take(n)
 				for i := range t.x[a] {
 					for j := 0; j < keep; j++ {
 						t.x[a][i] += p[a][i*n+j] * old.x[a][j] * e[j]
@@ -168,7 +169,7 @@ func (s *productShot) grid(out []float64) {
 	f, st := s.f, s.st
 	if st.gridB[0] == nil {
 		for a := range f.axes {
-			st.gridB[a] = nodeModes(f.axes[a], f.nodes, a, st.ax[a].b)
+			st.gridB[a] = nodeModes(&f.mem, f.axes[a], f.nodes, a, st.ax[a].b)
 		}
 	}
 	for i := range out {

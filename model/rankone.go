@@ -9,9 +9,9 @@ import "math"
 // they are found from the nearer pole by the rational iteration of Li 1993 (LAPACK Working Note 89, "the middle way"),
 // guarded by bisection, and the vectors are made from the v that has exactly these eigenvalues (Gu & Eisenstat 1994,
 // SIAM J. Matrix Anal. Appl. 15:1266-1276), which keeps them orthogonal to rounding. Both references from memory.
-func rankOne(d, v []float64, rho float64) (mu, q, g []float64) {
+func rankOne(mem *slab, d, v []float64, rho float64) (mu, q, g []float64) {
 	n := len(d)
-	mu, q, g = make([]float64, n), make([]float64, n*n), make([]float64, n)
+	mu, q, g = mem.take(n), mem.take(n*n), mem.take(n)
 	if rho == 0 {
 		copy(mu, d)
 		for i := range d {

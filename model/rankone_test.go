@@ -15,7 +15,7 @@ func TestRankOneAgainstGeneralSolver(t *testing.T) {
 			for _, rho := range []float64{1e-6, 0.03, 1.7, 40, 1e5} {
 				t.Run(fmt.Sprintf("kind %d, %d functions, rho %g", kind, n, rho), func(t *testing.T) {
 					b := baseOf(kind, n)
-					mu, q, g := rankOne(b.d, b.top, rho)
+					mu, q, g := rankOne(new(slab), b.d, b.top, rho)
 					a := mat.NewSymDense(n, nil)
 					for i := range b.d {
 						for j := i; j < n; j++ {
@@ -67,6 +67,6 @@ func TestRankOneAgainstGeneralSolver(t *testing.T) {
 func BenchmarkRankOne10(b *testing.B) {
 	s := baseOf(planeHalf, 10)
 	for b.Loop() {
-		rankOne(s.d, s.top, 1.3)
+		rankOne(new(slab), s.d, s.top, 1.3)
 	}
 }
