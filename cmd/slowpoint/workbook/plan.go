@@ -16,9 +16,23 @@ type Item struct {
 // Product is a sound row of Products with its chain of steps.
 type Product struct {
 	model.Product
-	Steps                                       []model.Step
+	Steps                                       []model.Step // shared by the products of a process; do not change it
 	Family, RecipeVersion, Batch, Process, Note string
-	Readings                                    []cell.Reading // everything typed or defaulted that this product uses
+	readings                                    [][]cell.Reading // each part is shared by all products that use it
+}
+
+// Readings is everything typed or defaulted that the product uses: its own row, its food, points, steps, faces, courses, then the
+// limits, groups and tables that apply to it. It is put together anew at each call, so that 10,000 products share what they share.
+func (p *Product) Readings() []cell.Reading {
+	n := 0
+	for _, part := range p.readings {
+		n += len(part)
+	}
+	out := make([]cell.Reading, 0, n)
+	for _, part := range p.readings {
+		out = append(out, part...)
+	}
+	return out
 }
 
 // NotCalculated is a product that the plan names and that cannot be calculated.
@@ -38,8 +52,17 @@ type Plan struct {
 	Fahrenheit    bool   // show temperatures in °F first
 	Products      []Product
 	NotCalculated []NotCalculated
-	Limits        []rules.Limit
+	Limits        []rules.Limit // also those with faults (Unreadable): they are cannot tell
 	Groups        []rules.Group
 	Problems      cell.Errors               // in workbook order
 	Columns       map[string]map[string]int // sheet -> heading without unit -> column number, for Locate
+	Sheets        []string                  // the sheets in the order of the workbook, by the names that the user gave
+}
+
+// Locate fills in the column of a problem whose finder knew the row and the heading only.
+func (p *Plan) Locate(e cell.Error) cell.Error {
+	if e.At.Row > 0 && e.At.Col == 0 && e.Field != "" {
+		e.At.Col = p.Columns[e.At.Sheet][e.Field]
+	}
+	return e
 }

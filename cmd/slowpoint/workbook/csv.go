@@ -1,0 +1,210 @@
+package workbook
+
+import (
+	"bytes"
+	"crypto/sha256"
+	"encoding/csv"
+	"encoding/hex"
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+	"sort"
+	"strings"
+	"unicode/utf8"
+)
+
+// Limits on size; generous, and stated in the messages.
+const (
+	mostRows    = 100_000   // filled rows of a sheet
+	mostColumns = 512       // columns of a sheet
+	mostBytes   = 256 << 20 // of a plan, unzipped
+	mostCells   = 3_000_000 // of a plan
+	mostText    = 32_767    // characters of a cell, as in spreadsheets
+	lastRow     = 1_048_576 // of a spreadsheet
+)
+
+// readFolder takes every .csv file of a folder as a sheet, in the order of their names, and the digest of them all.
+func readFolder(folder string) ([]*grid, string, error) {
+	list, err := os.ReadDir(folder)
+	if err != nil {
+		return nil, "", fmt.Errorf("the folder %s cannot be read: %v", folder, reason(err))
+	}
+	sum := sha256.New()
+	var grids []*grid
+	total := int64(0)
+	for _, f := range list { // sorted by name
+		ext := filepath.Ext(f.Name())
+		if f.IsDir() || !strings.EqualFold(ext, ".csv") || strings.HasPrefix(f.Name(), ".") {
+			continue
+		}
+		path := filepath.Join(folder, f.Name())
+		if info, err := os.Stat(path); err == nil {
+			if total += info.Size(); total > mostBytes {
+				return nil, "", fmt.Errorf("the folder %s holds more than %d MB of CSV; divide the plan into several", folder, mostBytes>>20)
+			}
+		}
+		data, err := os.ReadFile(path)
+		if err != nil {
+			return nil, "", fmt.Errorf("%s cannot be read: %v", path, reason(err))
+		}
+		fmt.Fprintf(sum, "%s %d\n", f.Name(), len(data))
+		sum.Write(data)
+		grids = append(grids, csvGrid(strings.TrimSuffix(f.Name(), ext), data))
+	}
+	if len(grids) == 0 {
+		return nil, "", fmt.Errorf("the folder %s holds no .csv file; a plan is a workbook, or a folder with Products.csv, Steps.csv and the other sheets", folder)
+	}
+	return grids, hex.EncodeToString(sum.Sum(nil)), nil
+}
+
+// reason is the plain cause of a failed file operation.
+func reason(err error) string {
+	var pe *os.PathError
+	if errors.As(err, &pe) {
+		return pe.Err.Error()
+	}
+	return err.Error()
+}
+
+// csvGrid reads one CSV file. What cannot be read is told in refused.
+func csvGrid(name string, data []byte) *grid {
+	g := &grid{name: tidy(name), csv: true}
+	data = bytes.TrimPrefix(data, []byte("\xef\xbb\xbf"))
+	switch {
+	case bytes.HasPrefix(data, []byte("\xff\xfe")) || bytes.HasPrefix(data, []byte("\xfe\xff")):
+		g.refused, g.mend = fill(notUTF8.msg, []string{"it is UTF-16"}), notUTF8.hint
+		return g
+	case !utf8.Valid(data):
+		g.refused, g.mend = fill(notUTF8.msg, []string{fmt.Sprintf("line %d", 1+bytes.Count(data[:badByte(data)], []byte("\n")))}), notUTF8.hint
+		return g
+	case bytes.HasPrefix(data, []byte("PK\x03\x04")):
+		g.refused, g.mend = fill(csvUnreadable.msg, []string{"it is a workbook"}), "save the sheet as CSV, or give the workbook itself as the plan"
+		return g
+	}
+	data = bytes.TrimRight(data, "\x00")
+	sheet := sheetOf(g.name)
+	best, score := ',', -1
+	for _, d := range []rune{',', ';', '\t'} {
+		if n := likeness(sheet, data, d); n > score {
+			best, score = d, n
+		}
+	}
+	g.rows, g.refused = csvRows(data, best, mostRows)
+	if g.refused != "" {
+		g.mend = "save the sheet as CSV again from your spreadsheet program"
+	}
+	g.commas = best == ','
+	return g
+}
+
+func badByte(data []byte) int {
+	for i := 0; i < len(data); {
+		r, n := utf8.DecodeRune(data[i:])
+		if r == utf8.RuneError && n < 2 {
+			return i
+		}
+		i += n
+	}
+	return 0
+}
+
+// likeness tells how well a delimiter divides a sheet: known headings in its best row count first, then data rows that are as wide.
+func likeness(sheet *Sheet, data []byte, d rune) int {
+	rows, _ := csvRows(data, d, 40)
+	best, width := 0, 0
+	for i := range rows {
+		n := 0
+		if sheet != nil {
+			n = len(headings(sheet, &rows[i]))
+		}
+		if n > best {
+			best, width = n, len(rows[i].cells)
+		}
+	}
+	same := 0
+	for i := range rows {
+		if len(rows[i].cells) > 1 && len(rows[i].cells) <= max(width, 2) {
+			same++
+		}
+	}
+	return 1000*best + same
+}
+
+// csvRows reads at most most filled rows. Row numbers are those that a spreadsheet shows: a line break within quotes starts no row.
+func csvRows(data []byte, d rune, most int) (rows []gridRow, refused string) {
+	r := csv.NewReader(bytes.NewReader(data))
+	r.Comma, r.FieldsPerRecord, r.ReuseRecord = d, -1, true
+	breaks := 0 // line breaks within quotes so far
+	cells := 0
+	for {
+		rec, err := r.Read()
+		if err == io.EOF {
+			return rows, ""
+		}
+		if err != nil {
+			var pe *csv.ParseError
+			if errors.As(err, &pe) {
+				return rows, fill(csvUnreadable.msg, []string{fmt.Sprintf("line %d: %s", pe.Line, plainCSV(pe.Err))})
+			}
+			return rows, fill(csvUnreadable.msg, []string{err.Error()})
+		}
+		line, _ := r.FieldPos(0)
+		row := gridRow{n: line - breaks}
+		for i, f := range rec {
+			breaks += strings.Count(f, "\n")
+			if f = tidy(f); f != "" {
+				if i >= mostColumns || len(f) > mostText {
+					return rows, fill(csvUnreadable.msg, []string{fmt.Sprintf("line %d has more than %d columns or a cell of more than %d characters", line, mostColumns, mostText)})
+				}
+				k := text
+				if brokenWords[f] {
+					k = broken
+				}
+				row.cells = append(row.cells, entry{text: strings.Clone(f), col: int32(i + 1), kind: k})
+			}
+		}
+		if len(row.cells) == 0 {
+			continue
+		}
+		if cells += len(row.cells); cells > mostCells {
+			return rows, fill(csvUnreadable.msg, []string{fmt.Sprintf("more than %d cells", mostCells)})
+		}
+		if rows = append(rows, row); len(rows) > most {
+			if most == mostRows {
+				return nil, fill(tooManyRows.msg, []string{fmt.Sprint(mostRows)})
+			}
+			return rows, ""
+		}
+	}
+}
+
+// brokenWords are what spreadsheets print for a formula that failed.
+var brokenWords = map[string]bool{"#N/A": true, "#REF!": true, "#DIV/0!": true, "#VALUE!": true, "#NAME?": true, "#NUM!": true, "#NULL!": true, "#NV": true, "#WERT!": true, "#BEZUG!": true}
+
+func plainCSV(err error) string {
+	switch err {
+	case csv.ErrQuote:
+		return "a quotation mark in the wrong place"
+	case csv.ErrBareQuote:
+		return "a quotation mark in a cell that does not begin with one"
+	}
+	return err.Error()
+}
+
+// sheetOf finds a sheet of the plan by the name that the user gave it; nil if there is none.
+func sheetOf(name string) *Sheet {
+	for _, s := range Sheets {
+		if key(s.Name) == key(name) {
+			return s
+		}
+	}
+	return nil
+}
+
+func sheetNames() []string {
+	out := names(Sheets, func(s *Sheet) string { return s.Name })
+	sort.Strings(out)
+	return out
+}

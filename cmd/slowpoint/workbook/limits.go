@@ -1,0 +1,3 @@
+package workbook
+
+func (r *reader) readLimits() {}

@@ -1,0 +1,206 @@
+package workbook
+
+import (
+	"strings"
+
+	"slowpoint/model/cell"
+)
+
+// A saying is the wording of one kind of problem: what is wrong and what was expected, and how to mend it. {1}, {2}, … stand for its
+// arguments. Where a typed text is quoted in front, msg goes on after it; where the cell was blank, msg is a sentence of its own.
+type saying struct{ msg, hint string }
+
+// Every wording of the reader. Those of numbers come from model/unit, those of compositions from model/food.
+var (
+	// sheets and headings
+	unknownSheet  = saying{"is not a sheet of a plan and is ignored", "{1}"}
+	hiddenSheet   = saying{"is a hidden sheet and is ignored", "unhide it if it belongs to the plan"}
+	doubledSheet  = saying{"is there twice ({1} and {2})", "keep one of them"}
+	sheetNotYet   = saying{"is filled, but {1}", "take the rows out; the products that they concern are not calculated"}
+	noHeader      = saying{"The sheet has no row with all the needed headings: {1} {2} missing", "give every table a heading row; slowpoint blank writes one"}
+	emptySheet    = saying{"The sheet is empty", "fill it or take it out"}
+	aboveHeader   = saying{"{1} above the headings {2} ignored", ""}
+	unknownColumn = saying{"is not a column of the sheet {1}{2}", "correct the heading; a column of your own starts with # or is named by the item Ignore columns of the sheet Plan"}
+	doubledColumn = saying{"is there twice, in columns {1} and {2}", "keep one of the two columns"}
+	headingNoUnit = saying{"has no unit; {1} needs one", "put the unit in brackets, as {2}"}
+	headingUnit_  = saying{"has the unit {1}, which is not a unit of {2}", "units of {2} are {3}"}
+	headingKelvin = saying{"is in kelvin, which is not accepted for a temperature", "use °C or °F"}
+	headingNoDiff = saying{"is headed as a temperature, but it is a temperature difference", "write {1} (°C difference) or {1} (°F difference)"}
+	noHeading     = saying{"stands in a column without a heading", "give column {1} a heading, one that starts with # if it is your own, or clear the cell{2}"}
+	twoTables     = saying{"The sheet holds two tables, {1} and {2}", "keep one table on a sheet"}
+	hiddenColumn  = saying{"Column {1} is hidden, and its values are used", "unhide it so that everybody sees what is calculated"}
+	tooManyRows   = saying{"The sheet has more than {1} rows", "divide the plan into several"}
+	csvUnreadable = saying{"The file cannot be read as CSV: {1}", "{2}"}
+	notUTF8       = saying{"The file is not in UTF-8 ({1})", "save it as CSV UTF-8"}
+
+	// rows and cells
+	keyMissing    = saying{"{1} is missing, so nobody knows what the row belongs to", "fill it, or clear the row"}
+	missing       = saying{"{1} is missing", "{2}"}
+	hiddenRow     = saying{"The row is hidden", "unhide it or delete it; a hidden row is never used and never skipped in silence"}
+	mergedCells   = saying{"The cells {1} are merged", "unmerge them and fill each cell"}
+	notAChoice    = saying{"is not a {1}{2}", "choose from: {3}"}
+	duplicate     = saying{"is there twice; the first is in row {1}", "give each {2} a name of its own"}
+	errorValue    = saying{"is an error of the spreadsheet", "mend the formula or type the value"}
+	noResult      = saying{"The formula in {1} has no stored result", "open the workbook in your spreadsheet program, let it calculate, and save it again; or type the value"}
+	formulaUsed   = saying{"The cell holds a formula; its stored result is used", ""}
+	formulasUsed  = saying{"The cell and {1} more of its column, down to row {2}, hold formulas; their stored results are used", ""}
+	notPositive   = saying{"is not more than 0", "{1} must be more than 0"}
+	negative      = saying{"is less than 0", "{1} must be 0 or more"}
+	notShare      = saying{"is not between 0 and 100 %", "type a percentage from 0 to 100"}
+	notUpToOne    = saying{"is not between 0 and 1", "{1} is more than 0 and at most 1"}
+	belowZeroK    = saying{"is below the absolute zero", "check the number and its unit"}
+	isDate        = saying{"is formatted as a date", "type {1}, and give the cell a number format"}
+	isTime        = saying{"is formatted as a time", "type {1}, and give the cell a number format"}
+	isPercent     = saying{"is formatted as a percentage", "type {1}, and give the cell a number format"}
+	isTruth       = saying{"is a logical value", "type {1}"}
+	decimalMixed  = saying{"shows a decimal {1}, but {2} shows a decimal {3}", "use one decimal sign throughout, or fill the item Decimal sign of the sheet Plan"}
+	wordsNotFound = saying{"{1}{2}", "{3}"}
+
+	// Plan
+	unknownItem = saying{"is not an item of a plan{1}", "items are: {2}"}
+	noProducts  = saying{"The plan has no product", "fill the sheet Products"}
+
+	// products, foods
+	sizeMissing     = saying{"{1} is missing: a {2} needs {3}", "fill it, with a unit in the heading or in the cell"}
+	sizeUnused      = saying{"is a {1}, which a {2} does not use; it needs {3}", "clear the cell or change the shape"}
+	foodMissing     = saying{"Food is missing", "name a food of the sheet Foods or a built-in one; slowpoint foods lists them"}
+	foodForLayers   = saying{"is a food, but a layered slab takes its foods from the sheet Layers", "clear the cell or change the shape"}
+	foodUnknown     = saying{"is neither a food of the sheet Foods nor a built-in one{1}", "slowpoint foods lists the built-in foods"}
+	processUnknown  = saying{"has no rows in the sheet Steps{1}", "add its steps, or correct the name"}
+	processUnused   = saying{"is a process that no product uses{1}", "correct the name, or take the row out"}
+	productUnknown  = saying{"is not a product of the sheet Products{1}", "correct the name"}
+	foodMixed       = saying{"is given both as a composition and as measured properties", "keep the parts of the composition, or Conductivity and Specific heat"}
+	foodNothing     = saying{"The food has neither a composition nor measured properties", "fill Water, Protein, Fat, Carbohydrate, Fibre and Ash, or Conductivity, Density and Specific heat"}
+	foodPartly      = saying{"{1} is missing: measured properties are Conductivity, Density and Specific heat together", "fill it"}
+	foodTwice       = saying{"is there twice; a composition takes one row (the first is in row {1})", "keep one row, or give measured properties with At temperature"}
+	foodNoAt        = saying{"At temperature is missing: {1} has several rows, which make a table", "fill it in every row of the food"}
+	foodSameAt      = saying{"is the temperature of row {1} too", "give each row of a food a temperature of its own"}
+	foodUnlike      = saying{"differs from row {1} of the same food, which says {2}", "say it once, or the same in every row"}
+	airWithMeasured = saying{"is given beside measured properties, which already hold the air", "clear the cell"}
+
+	// steps, faces, courses
+	stepUnknown      = saying{"is not a step of the process {1}{2}", "correct the name"}
+	stepTwice        = saying{"is there twice in the process {1}; the first is in row {2}", "give each step of a process a name of its own"}
+	noMedium         = saying{"Temperature is missing: {1} needs a Temperature or a Course", "fill one of the two"}
+	bothMedia        = saying{"is given beside the temperature {1}", "keep Temperature or Course, not both"}
+	mediumUnused     = saying{"is given, but {1} has no temperature", "clear the cell"}
+	columnUnused     = saying{"is given, but {1} does not use {2}", "clear the cell or choose other surroundings"}
+	columnNeeded     = saying{"{1} is missing: {2} needs it", "{3}"}
+	noSurface        = saying{"Surface is missing: the air is warmer than the food, and a wet surface heats much more slowly than a dry one", "type dry (wrapped, lidded or truly dry) or wet"}
+	looseLid         = saying{"Wrap resistance is missing: loose lid needs it", "measure the air gap under the lid: it is about 0.04 m²K/W a millimetre"}
+	openWithWrap     = saying{"is given, but the cover is open", "clear the cell, or name the cover"}
+	courseUnknown    = saying{"is not a course of the sheet Courses{1}", "correct the name"}
+	courseShort      = saying{"is a course of {1}, shorter than the step of {2}", "add rows to the course up to the end of the step"}
+	courseLong       = saying{"is a course of {1}, longer than the step of {2}; the rest is cut off", ""}
+	courseStart      = saying{"is the first time of the course {1}; a course starts at 0", "add a row at 0, the start of the step"}
+	courseOrder      = saying{"does not come after the row before ({1})", "sort the rows of a course by rising time, each time once"}
+	courseHumidity   = saying{"Relative humidity is missing, but other rows of the course {1} give it", "fill it in every row of a course or in none"}
+	faceWrong        = saying{"is not a face that differs on a {1}; its faces are {2}", "correct the face, or take the row out"}
+	faceNone         = saying{"is a face, but a {1} has one surface", "take the row out"}
+	faceTwice        = saying{"is there twice for this step; the first is in row {1}", "keep one of the rows"}
+	processRefused   = saying{"cannot be calculated: {1}", "{2}"}
+	sharedByFaulty   = saying{"uses what has errors: see {1}", ""}
+	pointCentre      = saying{"is the name of the built-in point at 0, 0, 0", "give the point another name, or type 0 for Up, Across and Along"}
+	pointTwice       = saying{"is there twice for this product; the first is in row {1}", "give each point of a product a name of its own"}
+	pointAxis        = saying{"is not 0, but a {1} has no place {2}", "type 0 or clear the cell"}
+	pointOutside     = saying{"lies outside the product: {1} reaches {2} mm from the centre", "measure from the geometric centre"}
+	pointStirred     = saying{"is a point, but a stirred product has the same temperature everywhere", "take the row out"}
+	surroundingsOnly = saying{"is given on a face of {1}, which has no temperature", "clear the cell"}
+
+	// limits
+	limitNeeds     = saying{"{1} is missing: the rule {2} needs {3}", "fill it"}
+	limitUnused    = saying{"is given, but the rule {1} does not use {2}", "clear the cell or choose another rule"}
+	stageUnknown   = saying{"is not a stage{1}", "choose from: {2}; join several by +, as cook + rest"}
+	stageNowhere   = saying{"is a stage of no step of the products that the limit applies to", "correct the stage, or take the row out"}
+	stagePair      = saying{"is not a pair of stages", "type the stage that ends and the stage that starts, as cook > cool"}
+	noPair         = saying{"is a pair of stages, which only delay uses", "join stages by +, as cook + rest"}
+	appliesUnknown = saying{"matches no product and no family{1}", "type all, family: NAME, or the name of a product"}
+	familyUnknown  = saying{"matches no family of the sheet Products{1}", "correct the name of the family"}
+	whereUnknown   = saying{"is not a place{1}", "type every point, surface, centre, medium, or the name of a row of Points"}
+	whereLacking   = saying{"is a point that {1} does not have", "add it to Points for each product that the limit applies to"}
+	tableUnknown   = saying{"is not a table of the sheet Tables{1}", "correct the name"}
+	clockUnknown   = saying{"does not say when the clock starts", "type crossing, crossing of 60 °C, stage start: NAME, or stage end: NAME"}
+	clockFrom      = saying{"is given, but a clock that starts at a stage does not use From", "clear From, or let the clock start at the crossing"}
+	clockNoFrom    = saying{"From is missing: the clock starts when the food falls to it", "fill From, or type crossing of N °C as Clock starts"}
+	noCitation     = saying{"{1} is missing", "name the document, clause and edition that the limit comes from; the report's front page says that it is missing"}
+	clauseDate     = saying{"looks as if the spreadsheet had turned the {1} into a date", "type it as text (an apostrophe in front), as the code prints it"}
+	clauseDecimal  = saying{"looks as if the spreadsheet had turned the {1} into a decimal number: 1.10 becomes 1.1", "type it as text (an apostrophe in front), as the code prints it"}
+	groupUnknown   = saying{"is not a group of any limit or row of Groups{1}", "correct the name"}
+	groupCycle     = saying{"lies within itself by way of {1}", "let groups lie within each other in one direction only"}
+	groupEmpty     = saying{"is a group that no limit and no other group belongs to", "name it in the column Group of Limits, or take the row out"}
+	valueLikeSheet = saying{"{1}", "{2}"}
+)
+
+// fill puts the arguments into a wording.
+func fill(text string, args []string) string {
+	if !strings.Contains(text, "{") {
+		return text
+	}
+	pairs := make([]string, 0, 2*len(args))
+	for i, a := range args {
+		pairs = append(pairs, "{"+string(rune('1'+i))+"}", a)
+	}
+	return strings.NewReplacer(pairs...).Replace(text)
+}
+
+// problem words one problem.
+func (s saying) problem(at cell.Ref, level cell.Level, field, typed string, args ...string) cell.Error {
+	return cell.Error{At: at, Level: level, Field: field, Typed: typed, Msg: fill(s.msg, args), Hint: fill(s.hint, args)}
+}
+
+// or joins words: "a, b or c".
+func or(words []string) string { return joined(words, " or ") }
+
+// and joins words: "a, b and c".
+func and(words []string) string { return joined(words, " and ") }
+
+func joined(words []string, last string) string {
+	if len(words) < 2 {
+		return strings.Join(words, "")
+	}
+	return strings.Join(words[:len(words)-1], ", ") + last + words[len(words)-1]
+}
+
+// meant offers the nearest known word: "; did you mean cook?"; "" if none is near.
+func meant(word string, known []string) string {
+	if n := nearest(word, known); n != "" {
+		return "; did you mean " + n + "?"
+	}
+	return ""
+}
+
+// nearest is the known word with the fewest edits from word, if those are few enough to be a slip; the first of equals.
+func nearest(word string, known []string) string {
+	w := []rune(key(word))
+	best, least := "", 1+len(w)/3
+	for _, k := range known {
+		kk := []rune(key(k))
+		if d := len(kk) - len(w); d > least || -d > least {
+			continue
+		}
+		if n := edits(w, kk); n <= least && (best == "" || n < least) {
+			best, least = k, n
+		}
+	}
+	return best
+}
+
+// edits counts the letters to add, drop or change (Levenshtein).
+func edits(a, b []rune) int {
+	row := make([]int, len(b)+1)
+	for j := range row {
+		row[j] = j
+	}
+	for i := range a {
+		diagonal := row[0]
+		row[0] = i + 1
+		for j := range b {
+			cost := diagonal
+			if a[i] != b[j] {
+				cost = 1 + min(diagonal, row[j], row[j+1])
+			}
+			diagonal, row[j+1] = row[j+1], cost
+		}
+	}
+	return row[len(b)]
+}

@@ -1,0 +1,177 @@
+package workbook
+
+import (
+	"strconv"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+)
+
+// product is a row of Products while the plan is read.
+type product struct {
+	Product
+	line    *line
+	food    *food
+	own     map[string]*step   // rows of Steps that name it, by step
+	faces   map[string][]*face // rows of Faces that name it, by step
+	points  map[string]int     // row of each point
+	because cell.Errors
+}
+
+// suffer keeps faults that concern the product.
+func (p *product) suffer(es cell.Errors) {
+	for _, e := range es {
+		if e.Level == cell.Fault {
+			p.because.Add(e)
+		}
+	}
+}
+
+func (r *reader) productNames() []string {
+	return names(r.products, func(p *product) string { return p.Name })
+}
+
+// sizes are the size columns with the field that each fills.
+var sizes = []struct {
+	heading string
+	field   func(*model.Size) *float64
+}{
+	{"Thickness", func(s *model.Size) *float64 { return &s.ThicknessM }},
+	{"Width", func(s *model.Size) *float64 { return &s.WidthM }},
+	{"Length", func(s *model.Size) *float64 { return &s.LengthM }},
+	{"Diameter", func(s *model.Size) *float64 { return &s.DiameterM }},
+	{"Volume", func(s *model.Size) *float64 { return &s.VolumeM3 }},
+	{"Surface area", func(s *model.Size) *float64 { return &s.AreaM2 }},
+}
+
+// readProducts reads the sheet Products, row by row.
+func (r *reader) readProducts() {
+	r.byName = map[string]*product{}
+	t := r.tables["Products"]
+	if t == nil {
+		return
+	}
+	for _, l := range t.lines {
+		p := &product{line: l}
+		p.At = l.ref()
+		p.Name = l.words("Product")
+		if first := r.byName[key(p.Name)]; p.Name != "" && first != nil {
+			l.fault("Product", p.Name, duplicate, strconv.Itoa(first.At.Row), "product")
+		}
+		p.Family, p.RecipeVersion, p.Batch = l.words("Family"), l.words("Recipe version"), l.words("Batch")
+		p.Process = l.words("Process")
+		p.size(l)
+		r.productFood(p, l)
+		if v := l.number("Start temperature"); v != nil {
+			p.StartC = *v
+		}
+		p.Note = l.words("Note")
+		p.because = l.because
+		r.products = append(r.products, p)
+		if p.Name != "" && r.byName[key(p.Name)] == nil {
+			r.byName[key(p.Name)] = p
+		}
+	}
+}
+
+// size reads the shape and the sizes that it uses.
+func (p *product) size(l *line) {
+	if w := l.choice("Shape"); w != "" {
+		for _, s := range model.Shapes {
+			if s.Name == w {
+				p.Shape = s
+			}
+		}
+	}
+	for _, z := range sizes {
+		used := p.Shape == nil
+		if p.Shape != nil {
+			for _, n := range p.Shape.Needs {
+				used = used || n == z.heading
+			}
+		}
+		switch v := (*float64)(nil); {
+		case !used && l.filled(z.heading):
+			needs := and(p.Shape.Needs)
+			if needs == "" {
+				needs = "no size of its own"
+			}
+			l.fault(z.heading, l.entry(z.heading).text, sizeUnused, strings.ToLower(z.heading), p.Shape.Name, needs)
+		case used && p.Shape != nil && !l.filled(z.heading):
+			l.fault(z.heading, "", sizeMissing, z.heading, p.Shape.Name, and(p.Shape.Needs))
+		case used:
+			if v = l.number(z.heading); v != nil {
+				*z.field(&p.Size) = *v
+			}
+		}
+	}
+}
+
+// productFood finds the food of a product.
+func (r *reader) productFood(p *product, l *line) {
+	layered := p.Shape == model.LayeredSlab
+	name := l.words("Food")
+	switch {
+	case layered && name != "":
+		l.fault("Food", name, foodForLayers)
+	case layered || !l.sound() && name == "" && l.filled("Food"):
+	case name == "":
+		l.fault("Food", "", foodMissing)
+	default:
+		f := r.foodNamed(name)
+		if f == nil {
+			l.fault("Food", name, foodUnknown, r.foodsLike(name))
+			return
+		}
+		p.food, p.Food = f, f.material
+		l.suffer(f.because)
+	}
+}
+
+// readPoints reads the sheet Points.
+func (r *reader) readPoints() {
+	t := r.tables["Points"]
+	if t == nil {
+		return
+	}
+	for _, l := range t.lines {
+		owner, name := l.words("Product"), l.words("Point")
+		pt := model.Point{At: l.ref(), Name: name}
+		for _, axis := range []struct {
+			heading string
+			field   *float64
+		}{{"Up", &pt.UpM}, {"Across", &pt.AcrossM}, {"Along", &pt.AlongM}} {
+			if v := l.number(axis.heading); v != nil {
+				*axis.field = *v
+			} else if !l.filled(axis.heading) {
+				l.note(axis.heading, "", "0 m", "blank: 0 is taken")
+			}
+		}
+		p := r.byName[key(owner)]
+		if p == nil {
+			if owner != "" {
+				l.fault("Product", owner, productUnknown, meant(owner, r.productNames()))
+			}
+			continue
+		}
+		builtIn := key(name) == "centre"
+		switch {
+		case builtIn && pt.Place != (model.Place{}):
+			l.fault("Point", name, pointCentre)
+		case p.points[key(name)] > 0:
+			l.fault("Point", name, pointTwice, strconv.Itoa(p.points[key(name)]))
+		case p.Shape == model.Stirred && !builtIn:
+			l.fault("Point", name, pointStirred)
+		}
+		if p.points == nil {
+			p.points = map[string]int{}
+		}
+		p.points[key(name)] = l.row.n
+		if !builtIn {
+			p.Points = append(p.Points, pt)
+		}
+		p.readings = append(p.readings, l.readings)
+		p.suffer(l.because)
+	}
+}

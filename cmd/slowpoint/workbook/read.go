@@ -1,0 +1,398 @@
+package workbook
+
+import (
+	"crypto/sha256"
+	"encoding/hex"
+	"errors"
+	"fmt"
+	"os"
+	"path/filepath"
+	"strconv"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/model/unit"
+)
+
+// Read reads a plan: an .xlsx or .xlsm workbook (macros are never run), or a folder of UTF-8 .csv files named like the sheets.
+// The error says in one sentence why nothing at all could be understood as a plan; everything else that is wrong is in Plan.Problems,
+// and sound products are in Plan.Products whatever else is wrong.
+func Read(name string) (*Plan, error) {
+	info, err := os.Stat(name)
+	switch {
+	case errors.Is(err, os.ErrNotExist):
+		return nil, fmt.Errorf("%s: there is no such file or folder; look at the spelling of its name", name)
+	case err != nil:
+		return nil, fmt.Errorf("%s: it cannot be opened (%s)", name, reason(err))
+	}
+	var grids []*grid
+	digest := ""
+	if info.IsDir() {
+		if grids, digest, err = readFolder(name); err != nil {
+			return nil, err
+		}
+	} else {
+		if info.Size() > mostBytes {
+			return nil, fmt.Errorf("%s: the file is larger than %d MB, too large for a plan", name, mostBytes>>20)
+		}
+		data, err := os.ReadFile(name)
+		if err != nil {
+			return nil, fmt.Errorf("%s: it cannot be read (%s)", name, reason(err))
+		}
+		sum := sha256.Sum256(data)
+		digest = hex.EncodeToString(sum[:])
+		if grids, err = readWorkbook(data); err != nil {
+			return nil, fmt.Errorf("%s: %w", name, err)
+		}
+	}
+	p := &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest, Columns: map[string]map[string]int{}}
+	r := &reader{plan: p, formulas: map[cell.Ref]*formulas{}}
+	if err := r.sheets(grids); err != nil {
+		return nil, fmt.Errorf("%s: %w", name, err)
+	}
+	r.read()
+	return p, nil
+}
+
+// reader is a plan while it is read.
+type reader struct {
+	plan     *Plan
+	tables   map[string]*table // by the name in Sheets
+	grids    map[string]*grid
+	ignore   map[string]bool // headings of the item Ignore columns, by key
+	decimal  unit.Decimal
+	formulas map[cell.Ref]*formulas // by sheet and column
+	inOrder  []*formulas
+	problems cell.Errors
+
+	foods     map[string]*food
+	courses   map[string]*course
+	processes map[string]*process
+	order     []*process // processes in order of their first row
+	products  []*product
+	byName    map[string]*product
+}
+
+// formulas counts the cells of a column that hold the stored result of a formula.
+type formulas struct {
+	first cell.Ref
+	last  cell.Ref
+	n     int
+}
+
+func (r *reader) add(e cell.Error) { r.problems.Add(e) }
+
+// formula notes a stored result; a column of them is told once.
+func (r *reader) formula(at cell.Ref) {
+	k := cell.Ref{Sheet: at.Sheet, Col: at.Col}
+	f := r.formulas[k]
+	if f == nil {
+		f = &formulas{first: at}
+		r.formulas[k] = f
+		r.inOrder = append(r.inOrder, f)
+	}
+	if f.last != at { // a cell may be read more than once
+		f.n++
+	}
+	f.last = at
+}
+
+// sheets sorts the grids out: which sheet of a plan each is, and which decimal sign the whole file shows.
+func (r *reader) sheets(grids []*grid) error {
+	r.grids, r.tables, r.ignore = map[string]*grid{}, map[string]*table{}, map[string]bool{}
+	for _, g := range grids {
+		r.plan.Sheets = append(r.plan.Sheets, g.name)
+	}
+	known := names(Sheets, func(s *Sheet) string { return s.Name })
+	for _, g := range grids {
+		s := sheetOf(g.name)
+		at := cell.Ref{Sheet: g.name}
+		switch {
+		case g.hidden:
+			r.add(hiddenSheet.problem(at, cell.Warning, "", g.name))
+		case s == nil:
+			hint := "the sheets of a plan are " + and(known)
+			if n := nearest(g.name, known); n != "" {
+				hint = "did you mean " + n + "?"
+			}
+			r.add(unknownSheet.problem(at, cell.Warning, "", g.name, hint))
+		case r.grids[s.Name] != nil:
+			r.add(doubledSheet.problem(at, cell.Fault, "", g.name, r.grids[s.Name].name, g.name))
+		default:
+			r.grids[s.Name] = g
+		}
+	}
+	if r.grids["Products"] == nil {
+		var got []string
+		for i, g := range grids {
+			if i == 8 {
+				got = append(got, "…")
+				break
+			}
+			got = append(got, g.name)
+		}
+		return fmt.Errorf("this is not a plan: it has no visible sheet Products (its sheets are %s); slowpoint blank FILE.xlsx writes a plan to fill in", and(got))
+	}
+	return nil
+}
+
+// read reads the sheets in the order in which they need each other.
+func (r *reader) read() {
+	r.planItems()
+	r.decimalSign()
+	for _, s := range Sheets {
+		if g := r.grids[s.Name]; g != nil && s.Name != "Plan" {
+			r.tables[s.Name] = r.open(g, s)
+		}
+	}
+	r.readFoods()
+	r.readCourses()
+	r.readProducts()
+	r.readSteps()
+	r.readFaces()
+	r.readPoints()
+	r.notYet()
+	r.chains()
+	r.readLimits()
+	r.finish()
+}
+
+// finish tells of formulas, sorts the problems, and parts the sound products from the others.
+func (r *reader) finish() {
+	for _, f := range r.inOrder {
+		s, args := formulaUsed, []string{}
+		if f.n > 1 {
+			s, args = formulasUsed, []string{strconv.Itoa(f.n - 1), strconv.Itoa(f.last.Row)}
+		}
+		r.add(s.problem(f.first, cell.Note, "", "", args...))
+	}
+	if len(r.products) == 0 && r.tables["Products"] != nil && r.tables["Products"].whole() {
+		r.add(noProducts.problem(cell.Ref{Sheet: r.grids["Products"].name}, cell.Fault, "", ""))
+	}
+	for _, p := range r.products {
+		if len(p.because) == 0 {
+			r.plan.Products = append(r.plan.Products, p.Product)
+			continue
+		}
+		nc := NotCalculated{At: p.At, Product: p.Name, Because: once(p.because)}
+		nc.Because.Sort(r.plan.Sheets)
+		if nc.Product == "" {
+			nc.Product = fmt.Sprintf("(row %d)", p.At.Row)
+		}
+		r.plan.NotCalculated = append(r.plan.NotCalculated, nc)
+	}
+	r.plan.Problems = once(r.problems)
+	r.plan.Problems.Sort(r.plan.Sheets)
+}
+
+// once drops repeats: the same words at the same place.
+func once(es cell.Errors) cell.Errors {
+	type same struct {
+		at  cell.Ref
+		msg string
+	}
+	seen := make(map[same]bool, len(es))
+	out := es[:0:0]
+	for _, e := range es {
+		k := same{e.At, e.Msg}
+		if !seen[k] {
+			seen[k] = true
+			out = append(out, e)
+		}
+	}
+	return out
+}
+
+// planItems reads the sheet Plan.
+func (r *reader) planItems() {
+	s, g := SheetNamed("Plan"), r.grids["Plan"]
+	if g == nil {
+		return
+	}
+	t := r.open(g, s)
+	r.tables["Plan"] = t
+	if t == nil {
+		return
+	}
+	seen := map[string]int{}
+	for _, l := range t.lines {
+		item := l.words("Item")
+		if item == "" {
+			continue
+		}
+		known := ""
+		for _, i := range PlanItems {
+			name, _ := splitHeading(i)
+			typed, _ := splitHeading(item)
+			if key(name) == key(typed) {
+				known = i
+			}
+		}
+		if known == "" {
+			l.fault("Item", item, unknownItem, meant(item, PlanItems), strings.Join(PlanItems, ", "))
+			continue
+		}
+		if first := seen[known]; first > 0 {
+			l.fault("Item", item, duplicate, strconv.Itoa(first), "item")
+			continue
+		}
+		seen[known] = l.row.n
+		value := l.words("Value")
+		r.plan.Items = append(r.plan.Items, Item{At: l.at("Value"), Item: item, Value: value})
+		if value != "" {
+			r.planItem(l, known, item, value)
+		}
+	}
+}
+
+// planItem uses the items that change how the plan is read or shown.
+func (r *reader) planItem(l *line, known, item, value string) {
+	choice := func() string {
+		for _, c := range planChoices[known] {
+			if key(c) == key(value) {
+				return c
+			}
+		}
+		l.fault("Value", value, notAChoice, known, "", strings.Join(planChoices[known], ", "))
+		return ""
+	}
+	switch known {
+	case "Altitude (m)":
+		_, inside := splitHeading(item)
+		v, m := unit.Length.Parse(value, unit.Length.Unit(inside), unit.Point)
+		if m != nil {
+			l.fault("Value", value, wordsNotFound, m.Says, "", m.Mend)
+		} else if v.Computed < -500 || v.Computed > 6000 {
+			l.fault("Value", value, saying{"is not an altitude of a kitchen: −500 to 6000 m are accepted", "type the height above the sea"})
+		} else {
+			r.plan.AltitudeM = v.Computed
+		}
+	case "Paper":
+		r.plan.Paper = choice()
+	case "Show temperatures in":
+		if u := unit.Temperature.Unit(value); u != nil {
+			r.plan.Fahrenheit = u.Name() == "°F"
+		} else {
+			choice()
+		}
+	case "Decimal sign":
+		r.decimal = map[string]unit.Decimal{"point": unit.Point, "comma": unit.Comma}[choice()]
+	case "Date order":
+		choice()
+	case "Ignore columns":
+		for _, c := range strings.FieldsFunc(value, func(c rune) bool { return c == ',' || c == ';' }) {
+			r.ignore[key(c)] = true
+		}
+	}
+}
+
+// decimalSign looks at every text of a column of numbers for a decimal sign beyond doubt, unless the sheet Plan says it.
+func (r *reader) decimalSign() {
+	if r.decimal != unit.Unsure {
+		return
+	}
+	var first [3]cell.Ref
+	var typed [3]string
+	weak := unit.Unsure
+	for _, s := range Sheets {
+		g := r.grids[s.Name]
+		if g == nil || g.refused != "" {
+			continue
+		}
+		if g.csv && g.commas {
+			weak = unit.Point // a comma between the cells is none within a number, unless quoted
+		}
+		i, _ := findHeader(g, s)
+		if i < 0 {
+			continue
+		}
+		numbers := map[int32]bool{}
+		for _, h := range headings(s, &g.rows[i]) {
+			if h.column.Quantity != nil {
+				numbers[int32(h.col)] = true
+			}
+		}
+		for _, row := range g.rows[i+1:] {
+			for _, e := range row.cells {
+				if e.kind != text || !numbers[e.col] || !strings.ContainsAny(e.text, ".,") {
+					continue
+				}
+				if d := unit.Evidence(e.text); d != unit.Unsure && first[d].Row == 0 {
+					first[d], typed[d] = cell.Ref{Sheet: g.name, Row: row.n, Col: int(e.col)}, e.text
+				}
+			}
+		}
+	}
+	point, comma := first[unit.Point].Row > 0, first[unit.Comma].Row > 0
+	switch {
+	case point && comma:
+		r.add(decimalMixed.problem(first[unit.Comma], cell.Warning, "", typed[unit.Comma], "comma", first[unit.Point].String(), "point"))
+	case point:
+		r.decimal = unit.Point
+	case comma:
+		r.decimal = unit.Comma
+	default:
+		r.decimal = weak
+	}
+}
+
+// notYet tells of sheets that are recognised and cannot be used yet, and refuses the products that they concern.
+func (r *reader) notYet() {
+	for _, s := range Sheets {
+		t := r.tables[s.Name]
+		if s.Refused == "" || t == nil {
+			continue
+		}
+		for _, l := range t.lines {
+			var concerned []*product
+			switch s.Name {
+			case "Layers":
+				name := l.words("Product")
+				p := r.byName[key(name)]
+				if p == nil {
+					if name != "" {
+						l.fault("Product", name, productUnknown, meant(name, r.productNames()))
+					}
+					continue
+				}
+				if p.Shape != nil && p.Shape != model.LayeredSlab {
+					l.fault("Product", name, saying{"has layers, but its shape is {1}", "choose the shape layered slab, or take its layers out"}, p.Shape.Name)
+				}
+				l.words("Food")
+				l.number("Layer")
+				l.number("Thickness")
+				l.number("Contact resistance below")
+				p.suffer(l.because)
+				continue // the shape itself is refused
+			case "Spread":
+				concerned = r.matching(l.words("Applies to"), "")
+			case "Records":
+				concerned = r.matching(l.words("Product"), l.words("Process"))
+			}
+			first := s.Columns[0].Heading
+			l.fault(first, l.entry(first).text, sheetNotYet, s.Refused)
+			for _, p := range concerned {
+				p.suffer(l.because)
+			}
+		}
+	}
+}
+
+// matching finds the products that a name means: all, a family, a product, a process or process/step. With two words both must match.
+func (r *reader) matching(word, processName string) []*product {
+	var out []*product
+	w := key(word)
+	w = strings.TrimSpace(strings.TrimPrefix(w, "family:"))
+	for _, p := range r.products {
+		proc, _, _ := strings.Cut(w, "/")
+		hit := w == "" && processName != "" || w == "all" || w != "" && (w == key(p.Name) || w == key(p.Family) || strings.TrimSpace(proc) == key(p.Process))
+		if hit && (processName == "" || key(processName) == key(p.Process)) {
+			out = append(out, p)
+		}
+	}
+	return out
+}
+
+// whole tells whether the table has all its needed headings.
+func (t *table) whole() bool { return complete(t.sheet, t.place) }

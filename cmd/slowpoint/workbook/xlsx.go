@@ -1,0 +1,587 @@
+package workbook
+
+import (
+	"archive/zip"
+	"encoding/xml"
+	"errors"
+	"fmt"
+	"io"
+	"math"
+	"path"
+	"strconv"
+	"strings"
+	"time"
+)
+
+// The parts of a workbook are read here and not by excelize, which gives a shortened sheet without an error where a part is damaged,
+// rounds numbers, and needs a whole sheet in memory to tell a formula or a number format. One pass checks and reads.
+
+// book is what a workbook's parts say before any sheet is read.
+type book struct {
+	sheets  []bookSheet
+	is1904  bool
+	strings []string
+	forms   []form // of each cell style
+}
+
+type bookSheet struct {
+	name, part string
+	hidden     bool
+}
+
+// readWorkbook reads every sheet of a workbook; hidden ones are given without rows.
+func readWorkbook(data []byte) ([]*grid, error) {
+	z, err := container(data)
+	if err != nil {
+		return nil, err
+	}
+	m := &meter{left: mostBytes}
+	byName := map[string]*zip.File{}
+	for _, f := range z.File {
+		byName[strings.ToLower(f.Name)] = f
+	}
+	b, done, err := readBook(byName, m)
+	if err != nil {
+		return nil, err
+	}
+	grids := make([]*grid, len(b.sheets))
+	cells := mostCells
+	for i, s := range b.sheets {
+		f := byName[strings.ToLower(s.part)]
+		if f == nil {
+			return nil, damaged(s.part, fmt.Errorf("it is missing, and the sheet %s is in it", s.name))
+		}
+		g := &grid{name: tidy(s.name), hidden: s.hidden, hiddenC: map[int]bool{}, is1904: b.is1904}
+		if err := m.part(f, func(r io.Reader) error { return b.sheet(r, g, &cells) }); err != nil {
+			return nil, err
+		}
+		done[f] = true
+		grids[i] = g
+	}
+	for _, f := range z.File {
+		if done[f] {
+			continue
+		}
+		n := strings.ToLower(f.Name)
+		var use func(io.Reader) error
+		if strings.HasSuffix(n, ".xml") && (strings.HasPrefix(n, "xl/worksheets/") || n == "[content_types].xml") || strings.HasSuffix(n, ".rels") {
+			use = wellFormed
+		}
+		if err := m.part(f, use); err != nil {
+			return nil, err
+		}
+	}
+	return grids, nil
+}
+
+// readBook reads the parts that the sheets need: which sheets there are, shared texts, number formats.
+func readBook(byName map[string]*zip.File, m *meter) (*book, map[*zip.File]bool, error) {
+	b, done := &book{}, map[*zip.File]bool{}
+	home := "xl/workbook.xml"
+	links := func(of string) map[string]link {
+		out := map[string]link{}
+		if f := byName[strings.ToLower(path.Join(path.Dir(of), "_rels", path.Base(of)+".rels"))]; f != nil {
+			m.part(f, func(r io.Reader) error { // read again with its errors below
+				return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
+					if e.Name.Local == "Relationship" {
+						out[attr(e, "Id")] = link{attr(e, "Type"), target(of, attr(e, "Target"))}
+					}
+					return nil
+				}, nil)
+			})
+		}
+		return out
+	}
+	for _, l := range links("") {
+		if strings.HasSuffix(l.kind, "/officeDocument") {
+			home = l.part
+		}
+	}
+	f := byName[strings.ToLower(home)]
+	if f == nil {
+		return nil, nil, errors.New("this is not an .xlsx workbook (a document of another kind?); a plan is an .xlsx workbook, or a folder of .csv files")
+	}
+	parts := links(home)
+	type raw struct{ name, id, state string }
+	var sheets []raw
+	err := m.part(f, func(r io.Reader) error {
+		return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
+			switch e.Name.Local {
+			case "workbookPr":
+				v := attr(e, "date1904")
+				b.is1904 = v == "1" || v == "true"
+			case "sheet":
+				sheets = append(sheets, raw{attr(e, "name"), attr(e, "id"), attr(e, "state")})
+			}
+			return nil
+		}, nil)
+	})
+	if err != nil {
+		return nil, nil, err
+	}
+	done[f] = true
+	for _, s := range sheets {
+		l := parts[s.id]
+		if l.part == "" {
+			return nil, nil, damaged(f.Name, fmt.Errorf("the sheet %s has no part", s.name))
+		}
+		if !strings.HasSuffix(l.kind, "/worksheet") {
+			continue // a chart or macro sheet
+		}
+		b.sheets = append(b.sheets, bookSheet{s.name, l.part, s.state == "hidden" || s.state == "veryHidden"})
+	}
+	for _, l := range parts {
+		f := byName[strings.ToLower(l.part)]
+		var use func(io.Reader) error
+		switch {
+		case strings.HasSuffix(l.kind, "/sharedStrings"):
+			use = b.readStrings
+		case strings.HasSuffix(l.kind, "/styles"):
+			use = b.readStyles
+		default:
+			continue
+		}
+		if f == nil {
+			return nil, nil, damaged(l.part, errors.New("it is missing"))
+		}
+		if err := m.part(f, use); err != nil {
+			return nil, nil, err
+		}
+		done[f] = true
+	}
+	return b, done, nil
+}
+
+// link is a relationship of one part to another.
+type link struct{ kind, part string }
+
+// target is a part's name from the place of the part that points at it.
+func target(from, to string) string {
+	if strings.HasPrefix(to, "/") {
+		return strings.TrimPrefix(path.Clean(to), "/")
+	}
+	return strings.TrimPrefix(path.Join(path.Dir(from), to), "/")
+}
+
+func attr(e xml.StartElement, name string) string {
+	for _, a := range e.Attr {
+		if a.Name.Local == name {
+			return a.Value
+		}
+	}
+	return ""
+}
+
+// readStrings reads the shared texts; runs of one text are joined, its reading aids (rPh) left out.
+func (b *book) readStrings(r io.Reader) error {
+	return elements(r, func(d *xml.Decoder, e xml.StartElement) error {
+		if e.Name.Local != "si" {
+			return nil
+		}
+		s, err := richText(d)
+		if err != nil {
+			return err
+		}
+		b.strings = append(b.strings, tidy(s))
+		return nil
+	}, nil)
+}
+
+// richText reads up to the end of the element that was just opened and joins its texts.
+func richText(d *xml.Decoder) (string, error) {
+	var s strings.Builder
+	for depth, inT := 1, false; depth > 0; {
+		t, err := d.Token()
+		if err != nil {
+			return "", midway(err)
+		}
+		switch t := t.(type) {
+		case xml.StartElement:
+			if t.Name.Local == "rPh" {
+				if err := d.Skip(); err != nil {
+					return "", midway(err)
+				}
+				continue
+			}
+			depth++
+			inT = t.Name.Local == "t"
+		case xml.EndElement:
+			depth--
+			inT = false
+		case xml.CharData:
+			if inT {
+				s.Write(t)
+			}
+		}
+	}
+	return unescape(s.String()), nil
+}
+
+func midway(err error) error {
+	if err == io.EOF {
+		return io.ErrUnexpectedEOF
+	}
+	return err
+}
+
+// unescape undoes _x000D_, which stands for a character that XML cannot hold.
+func unescape(s string) string {
+	for from := 0; ; {
+		i := strings.Index(s[from:], "_x")
+		if i < 0 || from+i+7 > len(s) {
+			return s
+		}
+		i += from
+		n, err := strconv.ParseUint(s[i+2:i+6], 16, 16)
+		if err != nil || s[i+6] != '_' {
+			from = i + 2
+			continue
+		}
+		c := string(rune(n))
+		s = s[:i] + c + s[i+7:]
+		from = i + len(c)
+	}
+}
+
+// readStyles finds what the number format of each cell style makes of a number.
+func (b *book) readStyles(r io.Reader) error {
+	custom := map[string]form{}
+	inCells := false
+	return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
+		switch e.Name.Local {
+		case "numFmt":
+			custom[attr(e, "numFmtId")] = formOf(attr(e, "formatCode"))
+		case "cellXfs":
+			inCells = true
+		case "xf":
+			if inCells {
+				id := attr(e, "numFmtId")
+				f, ok := custom[id]
+				if !ok {
+					f = builtIn(id)
+				}
+				b.forms = append(b.forms, f)
+			}
+		}
+		return nil
+	}, func(name string) {
+		if name == "cellXfs" {
+			inCells = false
+		}
+	})
+}
+
+// builtIn gives the form of the number formats that have a number and no code (ECMA-376 part 1, 18.8.30).
+func builtIn(id string) form {
+	n, _ := strconv.Atoi(id)
+	switch {
+	case n == 9 || n == 10:
+		return percent
+	case n >= 18 && n <= 21 || n >= 45 && n <= 47:
+		return clock
+	case n >= 14 && n <= 17 || n == 22 || n >= 27 && n <= 36 || n >= 50 && n <= 58:
+		return date
+	}
+	return bare
+}
+
+// formOf reads a number format code: what stands in quotes, behind a backslash or in brackets is no part of it, but [h], [m] and [s].
+func formOf(code string) form {
+	code = strings.ToLower(code)
+	var plain strings.Builder
+	for i := 0; i < len(code); i++ {
+		switch c := code[i]; c {
+		case '"':
+			if j := strings.IndexByte(code[i+1:], '"'); j >= 0 {
+				i += j + 1
+			}
+		case '\\', '_', '*':
+			i++
+		case '[':
+			j := strings.IndexByte(code[i:], ']')
+			if j < 0 {
+				continue
+			}
+			if in := strings.Trim(code[i+1:i+j], "hms"); in == "" {
+				plain.WriteString(code[i+1 : i+j])
+				plain.WriteByte('h')
+			}
+			i += j
+		case ';':
+			i = len(code)
+		default:
+			plain.WriteByte(c)
+		}
+	}
+	s := plain.String()
+	switch {
+	case strings.Contains(s, "general"):
+		return bare
+	case strings.ContainsAny(s, "yd"):
+		return date
+	case strings.ContainsAny(s, "hs"):
+		return clock
+	case strings.Contains(s, "m"):
+		return date
+	case strings.Contains(s, "%"):
+		return percent
+	}
+	return bare
+}
+
+// sheet reads the cells of one sheet. left is how many cells the plan may still have.
+func (b *book) sheet(r io.Reader, g *grid, left *int) error {
+	row := gridRow{}
+	col, filled := 0, 0
+	flush := func() {
+		if len(row.cells) > 0 && !g.hidden {
+			g.rows = append(g.rows, row)
+		}
+		row = gridRow{n: row.n}
+	}
+	rooted := false
+	err := elements(r, func(d *xml.Decoder, e xml.StartElement) error {
+		if !rooted && e.Name.Local != "worksheet" {
+			return errors.New("it is not a sheet")
+		}
+		rooted = true
+		switch e.Name.Local {
+		case "row":
+			flush()
+			n := row.n + 1
+			if a := attr(e, "r"); a != "" {
+				v, err := strconv.Atoi(a)
+				if err != nil {
+					return fmt.Errorf("%q is not a row number", a)
+				}
+				if v < n {
+					return fmt.Errorf("row %d comes after row %d", v, row.n)
+				}
+				n = v
+			}
+			if n > lastRow {
+				return fmt.Errorf("row %d does not exist in a spreadsheet", n)
+			}
+			hidden := attr(e, "hidden")
+			row, col = gridRow{n: n, hidden: hidden == "1" || hidden == "true"}, 0
+			if row.hidden == false && attr(e, "customHeight") != "" {
+				if h, err := strconv.ParseFloat(attr(e, "ht"), 64); err == nil && h == 0 {
+					row.hidden = true
+				}
+			}
+		case "c":
+			if row.n == 0 {
+				return errors.New("a cell stands outside the rows")
+			}
+			n, err := column(attr(e, "r"), row.n, col)
+			if err != nil {
+				return err
+			}
+			col = n
+			if *left--; *left < 0 {
+				return fmt.Errorf("the plan has more than %d cells; clear the cells that are formatted and blank, or divide the plan", mostCells)
+			}
+			c, err := b.cell(d, e)
+			if err != nil {
+				return err
+			}
+			if c.kind == blank {
+				return nil
+			}
+			if len(row.cells) == 0 {
+				if filled++; filled > mostRows+1000 {
+					g.refused, g.mend = fill(tooManyRows.msg, []string{strconv.Itoa(mostRows)}), tooManyRows.hint
+				}
+				row.cells = make([]entry, 0, 12)
+			}
+			c.col = int32(col)
+			if g.refused == "" {
+				row.cells = append(row.cells, c)
+			}
+		case "mergeCell":
+			if m, ok := parseBlock(attr(e, "ref")); ok {
+				g.merged = append(g.merged, m)
+			}
+		case "col":
+			if h := attr(e, "hidden"); h == "1" || h == "true" {
+				from, _ := strconv.Atoi(attr(e, "min"))
+				to, _ := strconv.Atoi(attr(e, "max"))
+				for i := max(from, 1); i <= min(to, mostColumns); i++ {
+					g.hiddenC[i] = true
+				}
+			}
+		}
+		return nil
+	}, nil)
+	flush()
+	return err
+}
+
+// column reads a cell's name (which must lie in its row) and gives its column, after the one before.
+func column(name string, row, before int) (int, error) {
+	n := before + 1
+	if name != "" {
+		c, r, ok := parseName(name)
+		switch {
+		case !ok:
+			return 0, fmt.Errorf("%q is not the name of a cell", name)
+		case r != row:
+			return 0, fmt.Errorf("the cell %s stands in row %d", name, row)
+		case c < n:
+			return 0, fmt.Errorf("the cells of row %d are doubled or out of order", row)
+		}
+		n = c
+	}
+	if n > mostColumns {
+		return 0, fmt.Errorf("a cell of row %d lies beyond column %d, the last that is read", row, mostColumns)
+	}
+	return n, nil
+}
+
+// parseName reads the name of a cell: AB12.
+func parseName(name string) (col, row int, ok bool) {
+	i := 0
+	for ; i < len(name) && i < 4; i++ {
+		c := name[i] | 0x20
+		if c < 'a' || c > 'z' {
+			break
+		}
+		col = col*26 + int(c-'a') + 1
+	}
+	row, err := strconv.Atoi(name[i:])
+	return col, row, err == nil && i > 0 && i < 4 && row > 0 && name[i] != '+' && col <= 16384
+}
+
+func parseBlock(ref string) (block, bool) {
+	a, b, two := strings.Cut(ref, ":")
+	if !two {
+		b = a
+	}
+	l, t, ok := parseName(a)
+	r, bo, ok2 := parseName(b)
+	return block{l, t, r, bo}, ok && ok2
+}
+
+// cell reads one cell up to its end.
+func (b *book) cell(d *xml.Decoder, e xml.StartElement) (entry, error) {
+	var c entry
+	kindWord, value, inline := attr(e, "t"), "", ""
+	hasValue, hasV := false, false
+	for depth := 1; depth > 0; {
+		t, err := d.Token()
+		if err != nil {
+			return c, midway(err)
+		}
+		switch t := t.(type) {
+		case xml.StartElement:
+			switch t.Name.Local {
+			case "f":
+				c.formula = true
+				if err := d.Skip(); err != nil {
+					return c, midway(err)
+				}
+			case "is":
+				if inline, err = richText(d); err != nil {
+					return c, err
+				}
+			case "v":
+				if value, err = charData(d); err != nil {
+					return c, err
+				}
+				hasV, hasValue = true, value != ""
+			default:
+				depth++
+			}
+		case xml.EndElement:
+			depth--
+		}
+	}
+	switch {
+	case kindWord == "s":
+		if !hasValue {
+			break
+		}
+		n, err := strconv.Atoi(strings.TrimSpace(value))
+		if err != nil || n < 0 || n >= len(b.strings) {
+			return c, fmt.Errorf("the cell %s points at text %s of %d shared texts", attr(e, "r"), value, len(b.strings))
+		}
+		c.kind, c.text = text, b.strings[n]
+	case kindWord == "inlineStr":
+		c.kind, c.text = text, tidy(inline)
+	case kindWord == "str":
+		c.kind, c.text = text, tidy(unescape(value))
+		if c.formula && !hasV { // <v></v> is the stored result "", a missing <v> is none
+			c.kind = noStored
+			return c, nil
+		}
+	case !hasValue:
+		if c.formula {
+			c.kind = noStored
+			return c, nil
+		}
+	case kindWord == "b":
+		c.kind, c.text = truth, map[bool]string{true: "TRUE", false: "FALSE"}[value == "1" || value == "true"]
+	case kindWord == "e":
+		c.kind, c.text = broken, value
+	case kindWord == "d":
+		c.kind, c.text = text, tidy(value)
+	default:
+		c.kind, c.text = figure, strings.TrimSpace(value)
+		if s := attr(e, "s"); s != "" {
+			if n, err := strconv.Atoi(s); err == nil && n >= 0 && n < len(b.forms) {
+				c.form = b.forms[n]
+			}
+		}
+	}
+	if len(c.text) > 4*mostText {
+		return c, fmt.Errorf("the cell %s holds more than %d characters", attr(e, "r"), mostText)
+	}
+	if c.text == "" {
+		c.kind = blank
+		if c.formula {
+			c.formula = false
+		}
+	}
+	return c, nil
+}
+
+// charData reads the text of an element up to its end.
+func charData(d *xml.Decoder) (string, error) {
+	s := ""
+	for {
+		t, err := d.Token()
+		if err != nil {
+			return "", midway(err)
+		}
+		switch t := t.(type) {
+		case xml.CharData:
+			s += string(t)
+		case xml.StartElement:
+			if err := d.Skip(); err != nil {
+				return "", midway(err)
+			}
+		case xml.EndElement:
+			return s, nil
+		}
+	}
+}
+
+// isoDate prints a stored date: days from the end of 1899 (with the 29 February 1900 that never was) or from 1904.
+func isoDate(stored string, is1904 bool) string {
+	x, err := strconv.ParseFloat(stored, 64)
+	if err != nil || math.IsNaN(x) || x < 0 || x > 2958466 {
+		return stored
+	}
+	start := time.Date(1899, 12, 30, 0, 0, 0, 0, time.UTC)
+	if is1904 {
+		start = time.Date(1904, 1, 1, 0, 0, 0, 0, time.UTC)
+	} else if x < 61 {
+		start = start.AddDate(0, 0, 1)
+	}
+	whole := math.Floor(x)
+	t := start.AddDate(0, 0, int(whole))
+	if x == whole {
+		return t.Format("2006-01-02")
+	}
+	return t.Add(time.Duration(math.Round((x-whole)*86400)) * time.Second).Format("2006-01-02 15:04:05")
+}
