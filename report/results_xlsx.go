@@ -19,6 +19,9 @@ import (
 // mostRows is how many rows a sheet takes before it goes on in a second one; a spreadsheet program holds 1,048,576.
 const mostRows = 1_000_000
 
+// overviewName is the sheet that a spreadsheet program opens at.
+const overviewName = "Overview"
+
 // gridColumn is a column of a results sheet. A number is written with so many decimals at most; its looks are a number format.
 type gridColumn struct {
 	head     string
@@ -34,9 +37,9 @@ type grid struct {
 	most    int // rows a page, the heading included
 	paper   string
 	pages   []*part
-	ends    []int // last row of each finished page
-	row     int   // last row written on the current page
-	col     int   // last column written in it
+	filters []string // of each finished page: the range with the filter buttons
+	row     int      // last row written on the current page
+	col     int      // last column written in it
 	b       []byte
 	n       []byte // the row's number
 	err     error
@@ -57,9 +60,13 @@ func (g *grid) room(n int) {
 func (g *grid) turn() {
 	g.finish("")
 	g.pages, g.row = append(g.pages, newPart()), 0
+	selected := ""
+	if g.name == overviewName {
+		selected = ` tabSelected="1"`
+	}
 	g.b = append(g.b[:0], `<?xml version="1.0" encoding="UTF-8" standalone="yes"?>`+"\n"+
 		`<worksheet xmlns="http://schemas.openxmlformats.org/spreadsheetml/2006/main"><sheetPr><pageSetUpPr fitToPage="1"/></sheetPr>`+
-		`<sheetViews><sheetView workbookViewId="0"><pane ySplit="1" topLeftCell="A2" activePane="bottomLeft" state="frozen"/></sheetView></sheetViews><cols>`...)
+		`<sheetViews><sheetView`+selected+` workbookViewId="0"><pane ySplit="1" topLeftCell="A2" activePane="bottomLeft" state="frozen"/></sheetView></sheetViews><cols>`...)
 	for i, c := range g.columns {
 		g.b = append(g.b, fmt.Sprintf(`<col min="%d" max="%d" width="%g" customWidth="1"/>`, i+1, i+1, c.width)...)
 	}
@@ -86,7 +93,7 @@ func (g *grid) finish(filter string) {
 	_, err := fmt.Fprintf(g.pages[len(g.pages)-1], `</sheetData><autoFilter ref="%s"/><pageMargins left="0.5" right="0.5" top="0.6" bottom="0.6" header="0.3" footer="0.3"/>`+
 		`<pageSetup paperSize="%d" orientation="landscape" fitToWidth="1" fitToHeight="0"/></worksheet>`, filter, size)
 	g.fail(err)
-	g.ends = append(g.ends, g.row)
+	g.filters = append(g.filters, filter)
 }
 
 // table is the range of the headings and the rows below them.
@@ -149,11 +156,13 @@ func (g *grid) number(v float64) {
 		g.skip()
 		return
 	}
-	decimals := 6
+	decimals, style := 6, numberStyle
 	if g.col < len(g.columns) {
-		decimals = g.columns[g.col].decimals
+		if decimals = g.columns[g.col].decimals; decimals == 0 {
+			style = 0
+		}
 	}
-	g.cell(numberStyle)
+	g.cell(style)
 	g.b = append(appendNumber(append(g.b, `><v>`...), v, decimals), `</v></c>`...)
 }
 
@@ -178,9 +187,9 @@ func (g *grid) words(texts ...string) {
 
 // The styles, in the order in which they are made.
 const (
-	plainStyle   = iota + 1 // text, wrapped never
+	plainStyle   = iota + 1 // text: a formula typed by the user stays one even when the cell is edited
 	headingStyle            // bold, wrapped, on grey
-	numberStyle             // at most three decimals shown; the cell holds more
+	numberStyle             // two decimals shown, more where there are more
 )
 
 func makeStyles(f *excelize.File) error {
@@ -439,7 +448,7 @@ func stepWords(spans []model.Span, k int) (step, stage string) {
 
 // overview makes the first sheet: the products, the worst first; below them the problems and what the run was.
 func (b *Workbook) overview() *grid {
-	g := newGrid("Overview", overviewColumns(b.h), b.h.Paper)
+	g := newGrid(overviewName, overviewColumns(b.h), b.h.Paper)
 	rows := listed(b.h.NotCalculated, b.rows)
 	g.room(len(rows))
 	for i := range rows {
@@ -567,6 +576,9 @@ func (g *grid) bind(f *excelize.File, pages map[string]*part) error {
 			return err
 		}
 		pages[fmt.Sprintf("xl/worksheets/sheet%d.xml", n)] = p
+		if err := f.AutoFilter(name, g.filters[i], nil); err != nil { // for the hidden name that goes with the filter
+			return err
+		}
 		title := excelize.DefinedName{Name: "_xlnm.Print_Titles", RefersTo: "'" + name + "'!$1:$1", Scope: name}
 		if err := f.SetDefinedName(&title); err != nil {
 			return err

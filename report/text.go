@@ -308,8 +308,12 @@ func (t *Text) atEnd(p *Product, at float64) []string {
 // basis is what the numbers rest on.
 func (t *Text) basis(x *sheet) {
 	t.heading(2, "factors")
+	name := ""
 	for _, r := range x.factors() {
-		s := fmt.Sprintf(textWords["factor"], r[0], r[1])
+		if r[0] != "" { // the table of the PDF says a step's name once
+			name = r[0]
+		}
+		s := fmt.Sprintf(textWords["factor"], name, r[1])
 		if r[2] != "" {
 			s += fmt.Sprintf(textWords["factor from"], r[2])
 		}

@@ -2,11 +2,16 @@ package report
 
 import (
 	"bytes"
+	"encoding/json"
+	"fmt"
 	"io"
 	"regexp"
 	"strings"
 	"testing"
 
+	"github.com/xuri/excelize/v2"
+
+	"slowpoint/model"
 	"slowpoint/model/cell"
 	"slowpoint/rules"
 )
@@ -148,6 +153,33 @@ func TestQuantityIsRoundedToTheUnfavourableSide(t *testing.T) {
 			f := &rules.Finding{Limit: &c.limit, Unit: c.unit}
 			if got := h.quantity(f, &c.value, false); got != c.want {
 				t.Errorf("%v %s: %q, wanted %q", c.value, c.unit, got, c.want)
+			}
+		})
+	}
+}
+
+// Predictions of every shape pass through all writers, and no text is missing.
+func TestWritersOfPredictions(t *testing.T) {
+	for _, shape := range []*model.Shape{model.Slab, model.Cylinder, model.Sphere, model.ShortCylinder, model.Bar, model.Brick, model.Stirred} {
+		t.Run(shape.Name, func(t *testing.T) {
+			h, p := roastHead(), roast(t, shape, rules.Met)
+			got := string(write(t, NewText, h, p))
+			if blank := regexp.MustCompile(`\[[a-z -]+\]|%!|NaN|Inf`).FindString(got); blank != "" {
+				t.Errorf("a text is missing: %s in\n%s", blank, got)
+			}
+			for _, want := range []string{"Product 1: " + p.Product.Name, p.History.Method, "calculated, not measured", "coldest at the end", "probe at the end"} {
+				if !strings.Contains(got, want) && !(shape == model.Stirred && strings.HasPrefix(want, "probe")) {
+					t.Errorf("%q not found in\n%s", want, got)
+				}
+			}
+			if !json.Valid(write(t, NewJSON, h, p)) {
+				t.Error("results.json is not JSON")
+			}
+			rows, n := p.Samples.TimesS, len(p.Samples.TimesS)
+			f := opened(t, write(t, NewWorkbook, h, p))
+			last, err := f.GetCellValue("Courses", fmt.Sprintf("D%d", n+1), excelize.Options{RawCellValue: true})
+			if want := string(appendNumber(nil, rows[n-1]/60, 6)); err != nil || last != want {
+				t.Errorf("the course ends at %q min, %v; wanted %q", last, err, want)
 			}
 		})
 	}
