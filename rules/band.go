@@ -12,18 +12,20 @@ func judgeBand(v *view) Finding {
 	q := question{unit: "min", need: *l.TimeS / 60}
 	q.measure = func(p path, t tilt) outcome {
 		sp := p.stay(v.stages, between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK))
-		return v.exposed(sp, l.Counting, "band")
+		return v.exposed(sp, l.Counting, "band", t)
 	}
 	return v.judgePlaces(q)
 }
 
 // exposed judges a time that is allowed at most.
-func (v *view) exposed(sp spent, c Counting, word string) outcome {
+func (v *view) exposed(sp spent, c Counting, word string, t tilt) outcome {
 	l := v.l
 	was := sp.counted(c)
 	o := none(NotMet, word)
 	o.value, o.bad, o.margin = was.s/60, was.s/60, *l.TimeS-was.s
-	o.holes = holes{"value": lasting(was.s, 1)}
+	if !t.rank {
+		o.holes = holes{"value": lasting(was.s, 1), "count": strconv.Itoa(sp.count)}
+	}
 	o.start, o.end, o.at = when(was, sp.count)
 	switch {
 	case c == Once && sp.count > 1:
@@ -31,7 +33,6 @@ func (v *view) exposed(sp spent, c Counting, word string) outcome {
 		if o.word == "" {
 			o.word = "out again"
 		}
-		o.holes["count"] = strconv.Itoa(sp.count)
 	case l.within(was.s, *l.TimeS):
 		o.verdict = Met
 	}

@@ -101,7 +101,7 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 	o := none(NotMet, "cool late")
 	o.start, o.slow = start, true
 	if !cold.holds(q.c[last]) { // never down for good within the window
-		return v.coolOpen(o, w, w.b-start)
+		return v.coolOpen(o, w, w.b-start, t)
 	}
 	i := last
 	for i >= 0 && cold.holds(q.c[i]) {
@@ -114,7 +114,9 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 	took := math.Max(0, end-start)
 	o.end, o.at = math.Max(end, start), math.Max(end, start)
 	o.value, o.bad, o.margin = took/60, took/60, *l.TimeS-took
-	o.holes = holes{"value": lasting(took, 1), "start": l.startWords()}
+	if !t.rank {
+		o.holes = holes{"value": lasting(took, 1), "start": l.startWords(), "stage": v.stageNames()}
+	}
 	o.word = "cool closed"
 	if took == 0 {
 		o.word = "cool at once"
@@ -122,7 +124,6 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 	switch {
 	case end > w.stageTo+sameS:
 		o.word = "cool stage"
-		o.holes["stage"] = v.stageNames()
 	case l.within(took, *l.TimeS):
 		o.verdict = Met
 	}
@@ -133,13 +134,18 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 }
 
 // coolOpen judges a window that ends before the place is down for good.
-func (v *view) coolOpen(o outcome, w window, ran float64) outcome {
+func (v *view) coolOpen(o outcome, w window, ran float64, t tilt) outcome {
 	l := v.l
 	o.value, o.bad, o.margin, o.at = ran/60, ran/60, *l.TimeS-ran, w.b
-	o.holes = holes{"value": lasting(ran, 1), "start": l.startWords(), "stage": v.stageNames()}
+	if !t.rank {
+		up := 1
+		if !l.within(ran, *l.TimeS) {
+			up = -1
+		}
+		o.holes = holes{"value": lasting(ran, up), "start": l.startWords(), "stage": v.stageNames()}
+	}
 	switch {
 	case !l.within(ran, *l.TimeS):
-		o.holes["value"] = lasting(ran, -1)
 	case w.b > w.stageTo+sameS:
 		o.word = "cool stage"
 	default:

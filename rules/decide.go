@@ -12,6 +12,7 @@ import (
 type tilt struct {
 	errK float64 // the error band: every temperature of the limit moves, each to its own unfavourable side
 	ownK float64 // the limit's own temperature alone moves: what the margin asks
+	rank bool    // only verdict, value and badness are wanted: no words
 }
 
 // outcome is what a limit says of one place.
@@ -132,7 +133,7 @@ func (v *view) candidates(s scope, q question) []candidate {
 		out := make([]float64, len(times))
 		p, _ := v.h.Least(v.c.spots[i], s.surfaceOnly, func(p model.Place) float64 {
 			v.h.Course(p, times, out)
-			o := q.measure(path{t: times, c: out}, tilt{})
+			o := q.measure(path{t: times, c: out}, tilt{rank: true})
 			if o.verdict == NotApplicable {
 				return 1e9
 			}
@@ -143,12 +144,16 @@ func (v *view) candidates(s scope, q question) []candidate {
 	return cs
 }
 
-// pick ranks spots by their scanned courses and returns the worst, and the worst of those that are not beside it.
+// pick ranks spots by their scanned courses and returns the worst, and the second worst where its verdict differs.
 func (v *view) pick(spots []int, q question, errK float64) []int {
+	t := tilt{errK: errK, rank: true}
+	if v.c.roughly(); v.c.rough != nil && len(spots) >= manySpots {
+		spots = v.shortlist(spots, q, t)
+	}
 	best, second := -1, -1
 	var ob, os outcome
 	for _, i := range spots {
-		o := q.measure(path{t: v.c.times, c: v.c.rows[i]}, tilt{errK: errK})
+		o := q.measure(path{t: v.c.times, c: v.c.rows[i]}, t)
 		switch {
 		case best < 0 || worse(o, ob):
 			second, os = best, ob
@@ -161,6 +166,38 @@ func (v *view) pick(spots []int, q question, errK float64) []int {
 		return []int{best, second}
 	}
 	return []int{best}
+}
+
+// listed is how many spots of the rough ranking are looked at closely.
+const listed = 12
+
+// shortlist ranks many spots by their rough courses.
+func (v *view) shortlist(spots []int, q question, t tilt) []int {
+	type ranked struct {
+		spot int
+		o    outcome
+	}
+	var top []ranked
+	for _, i := range spots {
+		o := q.measure(path{t: v.c.roughT, c: v.c.rough[i]}, t)
+		at := len(top)
+		for at > 0 && worse(o, top[at-1].o) {
+			at--
+		}
+		if at == listed {
+			continue
+		}
+		if len(top) < listed {
+			top = append(top, ranked{})
+		}
+		copy(top[at+1:], top[at:])
+		top[at] = ranked{i, o}
+	}
+	var out []int
+	for _, r := range top {
+		out = append(out, r.spot)
+	}
+	return out
 }
 
 // room is the smallest margin in K over all places.
@@ -182,7 +219,11 @@ func (v *view) room(s scope, q question, cs []candidate) float64 {
 		take(margin(c.path, math.Inf(1)))
 	}
 	at := -1
+	rough := v.c.rough != nil && len(s.spots) >= manySpots
 	for _, i := range s.spots {
+		if rough && !v.maybe(q, i, least) {
+			continue
+		}
 		before := least
 		if take(margin(path{t: v.c.times, c: v.c.rows[i]}, least)); least < before-0.002 {
 			at = i
@@ -204,12 +245,27 @@ func (v *view) room(s scope, q question, cs []candidate) float64 {
 	return least
 }
 
+// maybe tells by its rough course whether a spot may have a margin below least.
+func (v *view) maybe(q question, spot int, least float64) bool {
+	const slackK = 0.3 // how far a rough course may be off
+	p := path{t: v.c.roughT, c: v.c.rough[spot]}
+	if q.room != nil {
+		r := q.room(p)
+		return !(r > least+slackK)
+	}
+	if math.IsInf(least, 1) {
+		return true
+	}
+	verdict := q.measure(p, tilt{ownK: least + slackK, rank: true}).verdict
+	return verdict != Met && verdict != NotApplicable
+}
+
 // roomBy finds by bisection how far the limit's own temperature may move before a place no longer meets it, K. It answers
 // +Inf where no change within reach matters or where the place meets it at least (then it cannot be the smallest).
 func roomBy(m measure, p path, least float64) float64 {
 	const reach = 300.0
 	met := func(k float64) bool {
-		v := m(p, tilt{ownK: k}).verdict
+		v := m(p, tilt{ownK: k, rank: true}).verdict
 		return v == Met || v == NotApplicable
 	}
 	hi := math.Min(least, reach)

@@ -28,13 +28,15 @@ func judgeHold(v *view) Finding {
 			o.word = "hold below"
 		}
 		o.value, o.bad, o.margin = held.s/60, -held.s/60, held.s-*l.TimeS
-		o.holes, o.slow = holes{"value": lasting(held.s, -1)}, l.ToC == nil
+		o.slow = l.ToC == nil
+		if !t.rank {
+			o.holes = holes{"value": lasting(held.s, -1), "count": strconv.Itoa(sp.count)}
+		}
 		o.start, o.end, o.at = when(held, sp.count)
 		again := l.Counting == Once && sp.count > 1
 		switch {
 		case again:
 			o.word, o.bad = "hold again", 1e5-held.s/60
-			o.holes["count"] = strconv.Itoa(sp.count)
 		case l.enough(held.s, *l.TimeS):
 			o.verdict = Met
 		}
@@ -86,7 +88,10 @@ func (v *view) reached() question {
 			o.word = "reached below"
 		}
 		o.value, o.bad, o.at = c, -sign*c, at
-		o.holes, o.slow = holes{"value": degrees(c, int(-sign))}, sign > 0
+		o.slow = sign > 0
+		if !t.rank {
+			o.holes = holes{"value": degrees(c, int(-sign))}
+		}
 		if v.heldRegion(t).holds(c) {
 			o.verdict = Met
 		}

@@ -43,7 +43,9 @@ func judgeLethality(v *view) Finding {
 			o.word = "lethality logs"
 		}
 		o.value, o.bad, o.margin, o.slow = best/per, -best/per, math.NaN(), true
-		o.holes = holes{"value": round(best/per, 2, -1)}
+		if !t.rank {
+			o.holes = holes{"value": round(best/per, 2, -1)}
+		}
 		if l.TimeS != nil {
 			o.margin = best - needS
 		}
@@ -151,10 +153,10 @@ func (k killer) over(p path, ivs []interval) float64 {
 }
 
 // stretch adds up between two knots, split at the floor and at the reference temperature where z changes there. top is the
-// warmest temperature: stretches that are far below it are taken as straight, their share is below a part in a million.
+// warmest temperature: stretches that are far below it are taken as straight, their share is below a part in a million; nothing is added for those.
 func (k killer) stretch(p path, i int, top float64) float64 {
 	a, b := p.c[i]+k.shiftK, p.c[i+1]+k.shiftK
-	if hi := math.Max(a, b); hi < k.floorC || p.t[i] == p.t[i+1] || (top-hi)*k.lnBelow > 21 {
+	if hi := math.Max(a, b); hi < k.floorC || p.t[i] == p.t[i+1] || (top-hi)*k.lnBelow > 14 {
 		return 0
 	}
 	if lo := math.Min(a, b); p.at == nil && lo >= k.floorC && (k.lnAbove == k.lnBelow || lo >= k.refC || math.Max(a, b) <= k.refC) {
@@ -184,7 +186,7 @@ func (k killer) stretch(p path, i int, top float64) float64 {
 		if lo, hi := math.Min(cs[n], cs[n+1]), math.Max(cs[n], cs[n+1]); lo < k.floorC-sameK && hi <= k.floorC+sameK {
 			continue
 		}
-		if p.at == nil || (top-math.Max(cs[n], cs[n+1]))*k.lnBelow > 14 {
+		if p.at == nil || (top-math.Max(cs[n], cs[n+1]))*k.lnBelow > 9 {
 			sum += k.straight(ts[n+1]-ts[n], cs[n], cs[n+1])
 		} else {
 			sum += k.gauss(p.at, ts[n], ts[n+1], cs[n], cs[n+1])

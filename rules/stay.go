@@ -33,7 +33,9 @@ func judgeStay(v *view, sign float64) Finding {
 			o.word, kept = "stay below", l.coldSide(*level-t.errK-t.ownK)
 		}
 		o.value, o.at, o.bad = c, at, -sign*c
-		o.holes = holes{"value": degrees(c, int(-sign))}
+		if !t.rank {
+			o.holes = holes{"value": degrees(c, int(-sign))}
+		}
 		if kept.holds(c) {
 			o.verdict = Met
 		}
@@ -56,7 +58,7 @@ func (v *view) excursion(level, sign float64) question {
 		if sign < 0 {
 			out, word = region{l.coldSide(level-t.errK-t.ownK).hi + 2*sameK, 1e9}, "out below"
 		}
-		return v.exposed(p.stay(v.stages, out), c, word)
+		return v.exposed(p.stay(v.stages, out), c, word, t)
 	}
 	return q
 }

@@ -39,7 +39,9 @@ func (v *view) row(p path, t tilt, row *Row, top float64) outcome {
 	r := v.l.warmSide(row.C + t.errK + t.ownK)
 	o := none(NotMet, "table missed")
 	o.row, o.slow = row, true
-	o.holes = holes{"row": row.words(), "table": v.l.Table.Name, "value": "0 s", "need": lasting(row.S, 1)}
+	if !t.rank {
+		o.holes = holes{"row": row.words(), "table": v.l.Table.Name, "value": "0 s", "need": lasting(row.S, 1)}
+	}
 	if row.S == 0 {
 		o.value = 0
 		if r.holds(top) {
@@ -56,7 +58,9 @@ func (v *view) row(p path, t tilt, row *Row, top float64) outcome {
 	held := sp.counted(v.l.Counting)
 	o.value, o.bad, o.margin = held.s/row.S, -held.s/row.S, held.s-row.S
 	o.start, o.end, o.at = when(held, sp.count)
-	o.holes["value"] = lasting(held.s, -1)
+	if !t.rank {
+		o.holes["value"] = lasting(held.s, -1)
+	}
 	if v.l.enough(held.s, row.S) && !(v.l.Counting == Once && sp.count > 1) {
 		o.verdict, o.word = Met, "table met"
 	}

@@ -22,6 +22,55 @@ type courses struct {
 	size  [3]interval       // range of Up, Across, Along over the spots, m
 	air   *path
 	damp  *path
+
+	roughT []float64 // for ranking many spots: fewer instants, and the spots' temperatures there
+	rough  [][]float64
+}
+
+// manySpots is from how many spots on a history is ranked by rough courses first.
+const manySpots = 24
+
+// roughly fills the rough courses: the instants that keep a few spots far apart within 0.3 K of their scanned courses.
+func (c *courses) roughly() {
+	if c.roughT != nil || c.h.Recorded || len(c.spots) < manySpots {
+		return
+	}
+	keep := make([]bool, len(c.times))
+	for n := 0; n < 5; n++ {
+		for _, i := range thin(c.times, c.rows[n*(len(c.rows)-1)/4], 0.3) {
+			keep[i] = true
+		}
+	}
+	for _, t := range c.bounds() {
+		keep[sort.SearchFloat64s(c.times, t)] = true
+	}
+	var at []int
+	for i, k := range keep {
+		if k {
+			at = append(at, i)
+			c.roughT = append(c.roughT, c.times[i])
+		}
+	}
+	all := make([]float64, len(at)*len(c.rows))
+	for s, row := range c.rows {
+		part := all[s*len(at) : (s+1)*len(at)]
+		for k, i := range at {
+			part[k] = row[i]
+		}
+		c.rough = append(c.rough, part)
+	}
+}
+
+// bounds are the instants that every path must have: the ends of the steps, and where a bound begins.
+func (c *courses) bounds() []float64 {
+	bounds := []float64{0, c.end}
+	for _, sp := range c.h.Spans {
+		bounds = append(bounds, sp.StartS, sp.EndS)
+	}
+	if c.h.Bound != "" {
+		bounds = append(bounds, c.h.BoundFromS)
+	}
+	return bounds
 }
 
 // newCourses prepares a history for judging.
@@ -35,14 +84,7 @@ func newCourses(h *model.History) *courses {
 	if len(h.Spans) == 0 {
 		c.end = c.times[len(c.times)-1]
 	}
-	bounds := []float64{0, c.end}
-	for _, sp := range h.Spans {
-		bounds = append(bounds, sp.StartS, sp.EndS)
-	}
-	if h.Bound != "" {
-		bounds = append(bounds, h.BoundFromS)
-	}
-	c.insert(bounds)
+	c.insert(c.bounds())
 	for i, s := range c.spots {
 		for k, x := range [3]float64{s.UpM, s.AcrossM, s.AlongM} {
 			if i == 0 {
@@ -105,12 +147,9 @@ func (c *courses) lightTimes(spot int) []float64 {
 	if t, ok := c.light[spot]; ok {
 		return t
 	}
-	keep := map[float64]bool{0: true, c.end: true}
-	for _, sp := range c.h.Spans {
-		keep[sp.StartS], keep[sp.EndS] = true, true
-	}
-	if c.h.Bound != "" {
-		keep[c.h.BoundFromS] = true
+	keep := map[float64]bool{}
+	for _, t := range c.bounds() {
+		keep[t] = true
 	}
 	for _, i := range thin(c.times, c.rows[spot], 0.15) {
 		keep[c.times[i]] = true
