@@ -260,19 +260,19 @@ func long(t testing.TB, n int) *Product {
 	return p
 }
 
-// 2,000 products of 500 samples pass in the memory of a few: the spools go to a file.
+// 2,000 products of 300 samples pass in the memory of a few: the spools go to a file.
 func TestTwoThousandProductsInBoundedMemory(t *testing.T) {
 	if testing.Short() {
 		t.Skip("writes 2,000 products")
 	}
-	p := long(t, 500)
+	p := long(t, 300)
 	for _, c := range []struct {
 		name string
 		make func() stream
-		most uint64 // bytes held before Close; the courses of all products would be 150 MB
+		most uint64 // bytes held before Close; the courses of all products would be 70 MB
 	}{
 		{"json", func() stream { return NewJSON(io.Discard, trayHead()) }, 24 << 20},
-		{"xlsx", func() stream { return NewWorkbook(io.Discard, trayHead()) }, 40 << 20},
+		{"xlsx", func() stream { return NewWorkbook(io.Discard, trayHead()) }, 24 << 20},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			before := held()
