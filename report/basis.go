@@ -12,7 +12,6 @@ import (
 // basis is what the numbers rest on: critical factors, method, known answers.
 func (x *sheet) basis() {
 	d, h, p := x.doc, x.head, x.p
-	d.page()
 	d.heading(say("basis title"), 0, 30)
 	d.heading(say("factors title"), 1, 25)
 	d.text(say("factors note"))
@@ -94,6 +93,11 @@ func (x *sheet) factors() [][]string {
 	for i := range p.History.Spans {
 		x.spanFactors(&p.History.Spans[i], add)
 	}
+	for i := len(rows) - 1; i > 0; i-- { // the name of a step once
+		if rows[i][0] == rows[i-1][0] {
+			rows[i][0] = ""
+		}
+	}
 	return rows
 }
 
@@ -138,8 +142,8 @@ func (x *sheet) spanFactors(sp *model.Span, add func(a, b, c string)) {
 			used += say("film total", plain(f.TotalW, 2, nearest))
 		}
 		source := f.Source
-		if f.Typed {
-			source = joined(say("film typed"), source)
+		if f.Typed && source == "" {
+			source = say("film typed")
 		}
 		add(what+face, used, source)
 	}

@@ -95,6 +95,11 @@ func (f *chart) draw(c *canvas) {
 	p.X.Label.Text, p.Y.Label.Text = f.xName, f.yName
 	p.X.Tick.Marker, p.Y.Tick.Marker = marks(f.xTicks), marks(f.yTicks)
 	p.Add(f)
+	widest := 0.0
+	for _, l := range f.lines {
+		widest = max(widest, widthMM(unseen{}.clean(l.name), f.size, false)/mmPerPt+17)
+	}
+	f.ends = min(f.ends, widest)
 	p.Draw(draw.Crop(draw.New(c), 0, -vg.Length(f.ends), 0, 0))
 }
 
@@ -106,32 +111,59 @@ func marks(at []float64) plot.ConstantTicks {
 	return t
 }
 
-// Plot draws everything inside the axes, and the labels beside them.
+// Plot draws everything inside the axes, and the labels beside them. The labels are placed first, where they cover least;
+// their white ground goes under the curves, so that no curve is ever covered by more than a letter.
 func (f *chart) Plot(c draw.Canvas, p *plot.Plot) {
 	x, y := p.Transforms(&c)
 	taken := &labels{}
-	f.plotBands(c, x, taken)
 	for _, v := range f.yTicks {
 		if v > f.y0 && v < f.y1 {
 			c.StrokeLine2(draw.LineStyle{Color: pale, Width: 0.7}, x(f.x0), y(v), x(f.x1), y(v))
 		}
 	}
+	f.plotBands(c, x, taken)
+	runs := make([][][]vg.Point, len(f.lines))
 	for i := range f.lines {
-		f.plotLine(c, x, y, i, taken)
+		runs[i] = f.runs(x, y, i, taken)
 	}
-	for i := range f.spots {
-		s := &f.spots[i]
-		c.DrawGlyph(draw.GlyphStyle{Color: black, Radius: 4, Shape: draw.RingGlyph{}}, vg.Point{X: x(s.x), Y: y(s.y)})
+	for _, s := range f.spots {
 		taken.add(vg.Rectangle{Min: vg.Point{X: x(s.x) - 4, Y: y(s.y) - 4}, Max: vg.Point{X: x(s.x) + 4, Y: y(s.y) + 4}})
 	}
+	var notes []note
 	for i := range f.levels {
-		f.plotLevel(c, x, y, &f.levels[i], taken)
+		notes = append(notes, f.placeLevel(c, x, y, &f.levels[i], taken))
 	}
-	for i := range f.spots {
-		s := &f.spots[i]
-		f.words(c, s.words, vg.Point{X: x(s.x), Y: y(s.y)}, 6, taken, false)
+	for _, s := range f.spots {
+		notes = append(notes, f.placeSpot(c, s.words, vg.Point{X: x(s.x), Y: y(s.y)}, taken))
+	}
+	for _, n := range notes {
+		b := n.box
+		c.FillPolygon(color.White, []vg.Point{b.Min, {X: b.Max.X, Y: b.Min.Y}, b.Max, {X: b.Min.X, Y: b.Max.Y}})
+	}
+	for _, l := range f.levels {
+		ls := draw.LineStyle{Color: black, Width: 1, Dashes: []vg.Length{5, 2, 1, 2}}
+		c.StrokeLine2(ls, x(l.from), y(l.y), x(l.to), y(l.y))
+	}
+	for i := len(f.lines) - 1; i >= 0; i-- {
+		f.plotLine(c, x, y, i, runs[i])
+	}
+	for _, s := range f.spots {
+		c.DrawGlyph(draw.GlyphStyle{Color: black, Radius: 4, Shape: draw.RingGlyph{}}, vg.Point{X: x(s.x), Y: y(s.y)})
+	}
+	for _, n := range notes {
+		if n.from != nil {
+			c.StrokeLine2(draw.LineStyle{Color: black, Width: 0.7}, n.from.X, n.from.Y, n.to.X, n.to.Y)
+		}
+		c.FillText(f.style(false), vg.Point{X: n.box.Min.X + 1.5, Y: n.box.Min.Y + vg.Length(f.size)*0.23}, n.words)
 	}
 	f.plotEnds(c, y)
+}
+
+// note is a label with its place, and a line to what it is about unless it stands beside it.
+type note struct {
+	words    string
+	box      vg.Rectangle
+	from, to *vg.Point
 }
 
 // plotBands draws the bounds of the steps and their names in the strip at the top.
@@ -169,25 +201,39 @@ func (f *chart) fit(name string, i int, room float64) string {
 	return ""
 }
 
+// runs turns a curve into unbroken pieces, and takes the room on its way.
+func (f *chart) runs(x, y func(float64) vg.Length, i int, taken *labels) [][]vg.Point {
+	l := &f.lines[i]
+	var all [][]vg.Point
+	var run []vg.Point
+	for k := range l.x {
+		if math.IsNaN(l.y[k]) {
+			all, run = append(all, run), nil
+			continue
+		}
+		pt := vg.Point{X: x(l.x[k]), Y: y(l.y[k])}
+		if n := len(run); n > 0 {
+			last := run[n-1]
+			parts := max(1, int(math.Hypot(float64(pt.X-last.X), float64(pt.Y-last.Y))/4))
+			for q := 1; q <= parts; q++ {
+				s := vg.Length(q) / vg.Length(parts)
+				m := vg.Point{X: last.X + s*(pt.X-last.X), Y: last.Y + s*(pt.Y-last.Y)}
+				taken.add(vg.Rectangle{Min: vg.Point{X: m.X - 1, Y: m.Y - 1}, Max: vg.Point{X: m.X + 1, Y: m.Y + 1}})
+			}
+		}
+		run = append(run, pt)
+	}
+	return append(all, run)
+}
+
 // plotLine draws a curve with marks along it.
-func (f *chart) plotLine(c draw.Canvas, x, y func(float64) vg.Length, i int, taken *labels) {
+func (f *chart) plotLine(c draw.Canvas, x, y func(float64) vg.Length, i int, runs [][]vg.Point) {
 	l, look := &f.lines[i], looks[i%len(looks)]
 	ls := draw.LineStyle{Color: look.color, Width: 1.2, Dashes: look.dash}
 	if i == 0 {
 		ls.Width = 1.8
 	}
-	var run []vg.Point
-	for k := range l.x {
-		if math.IsNaN(l.y[k]) {
-			c.StrokeLines(ls, run)
-			run = nil
-			continue
-		}
-		pt := vg.Point{X: x(l.x[k]), Y: y(l.y[k])}
-		run = append(run, pt)
-		taken.add(vg.Rectangle{Min: vg.Point{X: pt.X - 1, Y: pt.Y - 1}, Max: vg.Point{X: pt.X + 1, Y: pt.Y + 1}})
-	}
-	c.StrokeLines(ls, run)
+	c.StrokeLines(ls, runs...)
 	const n = 7
 	for k := 0; k < n; k++ {
 		at := f.x0 + (f.x1-f.x0)*(float64(k)+0.35+0.12*float64(i))/n
@@ -198,43 +244,39 @@ func (f *chart) plotLine(c draw.Canvas, x, y func(float64) vg.Length, i int, tak
 	}
 }
 
-// plotLevel draws a limit with its words at the line.
-func (f *chart) plotLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level, taken *labels) {
-	ls := draw.LineStyle{Color: black, Width: 1, Dashes: []vg.Length{5, 2, 1, 2}}
-	c.StrokeLine2(ls, x(l.from), y(l.y), x(l.to), y(l.y))
-	st := f.style(false)
-	w, h := st.Width(l.words)+3, vg.Length(f.size*1.15)
-	from := vg.Point{X: x(l.from) + 2, Y: y(l.y)}
+// placeLevel finds room for the words of a limit at its line.
+func (f *chart) placeLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level, taken *labels) note {
+	w, h := f.style(false).Width(l.words)+3, vg.Length(f.size*1.2)
+	left, right := x(l.from)+2, max(x(l.to)-w-2, x(l.from)+2)
 	var at []vg.Point
-	for k := 0; k <= 8; k++ { // along the line, above first
-		px := from.X + (max(x(l.to)-w-2, c.Min.X+2)-from.X)*vg.Length(k)/8
-		px = min(max(px, c.Min.X+2), c.Max.X-w)
-		at = append(at, vg.Point{X: px, Y: y(l.y) + 2}, vg.Point{X: px, Y: y(l.y) - h - 1})
+	for k := 0; k <= 10; k++ { // along the line, above first
+		px := min(max(left+(right-left)*vg.Length(k)/10, c.Min.X+2), c.Max.X-w)
+		at = append(at, vg.Point{X: px, Y: y(l.y) + 1}, vg.Point{X: px, Y: y(l.y) - h - 1})
 	}
-	f.write(c, st, l.words, taken.best(at, w, h, c.Rectangle), w, h)
+	if end := x(l.to) + 3; end+w < c.Max.X { // or behind its end
+		at = append(at, vg.Point{X: end, Y: y(l.y) - h/2})
+	}
+	return note{words: l.words, box: taken.best(at, w, h, c.Rectangle)}
 }
 
-// words puts a label beside a point, where it covers least.
-func (f *chart) words(c draw.Canvas, s string, p vg.Point, away vg.Length, taken *labels, bold bool) {
-	if s == "" {
-		return
-	}
-	st := f.style(bold)
-	w, h := st.Width(s)+3, vg.Length(f.size*1.15)
+// placeSpot finds room for a label near a point; farther off it gets a line.
+func (f *chart) placeSpot(c draw.Canvas, s string, p vg.Point, taken *labels) note {
+	w, h := f.style(false).Width(s)+3, vg.Length(f.size*1.2)
 	var at []vg.Point
-	for _, step := range []vg.Length{1, 2.5, 4.5} {
-		for _, v := range []vg.Length{1, -1} {
-			dy := v*away*step - h*vg.Length((1-v)/2)
-			at = append(at, vg.Point{X: p.X + away, Y: p.Y + dy}, vg.Point{X: p.X - w - away, Y: p.Y + dy})
+	for _, far := range []vg.Length{6, 12, 20, 30, 42, 56} {
+		for _, side := range []vg.Length{0, -w, -w / 2} {
+			dx := map[bool]vg.Length{true: far / 2, false: -far / 2}[side == 0]
+			at = append(at, vg.Point{X: p.X + side + dx, Y: p.Y + far}, vg.Point{X: p.X + side + dx, Y: p.Y - far - h})
 		}
 	}
-	f.write(c, st, s, taken.best(at, w, h, c.Rectangle), w, h)
-}
-
-// write puts words on a white ground.
-func (f *chart) write(c draw.Canvas, st text.Style, s string, at vg.Point, w, h vg.Length) {
-	c.FillPolygon(color.White, []vg.Point{at, {X: at.X + w, Y: at.Y}, {X: at.X + w, Y: at.Y + h}, {X: at.X, Y: at.Y + h}})
-	c.FillText(st, vg.Point{X: at.X + 1.5, Y: at.Y + h*0.2}, s)
+	b := taken.best(at, w, h, c.Rectangle)
+	n := note{words: s, box: b}
+	to := vg.Point{X: min(max(p.X, b.Min.X), b.Max.X), Y: min(max(p.Y, b.Min.Y), b.Max.Y)}
+	if d := vg.Length(math.Hypot(float64(to.X-p.X), float64(to.Y-p.Y))); d > 10 {
+		from := vg.Point{X: p.X + (to.X-p.X)*4/d, Y: p.Y + (to.Y-p.Y)*4/d}
+		n.from, n.to = &from, &to
+	}
+	return n
 }
 
 // labels remembers what is taken on a chart.
@@ -243,7 +285,7 @@ type labels struct{ boxes []vg.Rectangle }
 func (t *labels) add(r vg.Rectangle) { t.boxes = append(t.boxes, r) }
 
 // best takes the first of the places that covers nothing, or the one that covers least, within bounds.
-func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) vg.Point {
+func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) vg.Rectangle {
 	least, found := math.Inf(1), at[0]
 	for _, p := range at {
 		r := vg.Rectangle{Min: p, Max: vg.Point{X: p.X + w, Y: p.Y + h}}
@@ -264,8 +306,11 @@ func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) vg.Point {
 			break
 		}
 	}
-	t.add(vg.Rectangle{Min: found, Max: vg.Point{X: found.X + w, Y: found.Y + h}})
-	return found
+	r := vg.Rectangle{Min: found, Max: vg.Point{X: found.X + w, Y: found.Y + h}}
+	for range 3 { // words upon words are worse than words upon a line
+		t.add(r)
+	}
+	return r
 }
 
 // plotEnds names the curves at their right ends, moved apart where they would touch.
@@ -402,8 +447,8 @@ func (h *Head) history(p *Product, d *deciding, size, ends float64, everything b
 		f.levels = append(f.levels, l)
 	}
 	f.y0 = lo - 0.06*(hi-lo) - 1
-	f.y1 = hi + 0.14*(hi-lo) + 1
-	f.yTicks = ticksTo(f.y0, f.y1-0.08*(hi-lo), []float64{1, 2, 5, 10, 20, 25, 50, 100}, 8)
+	f.y1 = hi + 0.17*(hi-lo) + 1
+	f.yTicks = ticksTo(f.y0, hi+0.03*(hi-lo), []float64{1, 2, 5, 10, 20, 25, 50, 100}, 8)
 	for _, sp := range hist.Spans {
 		f.bands = append(f.bands, band{sp.Step.Name, sp.StartS / unitS, sp.EndS / unitS})
 	}

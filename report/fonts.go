@@ -84,7 +84,7 @@ func wrap(s string, width, size float64, bold bool) []string {
 	var lines []string
 	for _, par := range strings.Split(s, "\n") {
 		line := ""
-		for _, word := range strings.Fields(par) {
+		for _, word := range tokens(par) {
 			try := word
 			if line != "" {
 				try = line + " " + word
@@ -106,6 +106,27 @@ func wrap(s string, width, size float64, bold bool) []string {
 		lines = append(lines, line)
 	}
 	return lines
+}
+
+// units stay on the line of their number.
+var units = map[string]bool{"°C": true, "°F": true, "min": true, "h": true, "s": true, "mm": true, "K": true, "%": true, "L": true, "m/s": true, "m²": true,
+	"log10": true, "W/(m²·K)": true, "W/(m·K)": true, "J/(kg·K)": true, "kg/m³": true, "m²·K/W": true}
+
+// tokens are the words of a paragraph, each number with its unit.
+func tokens(s string) []string {
+	words := strings.Fields(s)
+	out := words[:0]
+	for i, w := range words {
+		if i > 0 {
+			last := out[len(out)-1]
+			if c := last[len(last)-1]; c >= '0' && c <= '9' && units[strings.TrimRight(w, ".,;:)")] {
+				out[len(out)-1] = last + " " + w
+				continue
+			}
+		}
+		out = append(out, w)
+	}
+	return out
 }
 
 // fitting is how many bytes of a word fit; at least one character.

@@ -73,6 +73,12 @@ func roastJudgement(p *Product, v rules.Verdict) rules.Judgement {
 		ToC: ptr(5.), Code: "An invented code", Typed: map[string]string{"To": "5 °C"}}
 	lid := &rules.Limit{At: cell.Ref{Sheet: "Limits", Row: 5}, Name: "Hot holding", Kind: &rules.Kind{Name: "stay above"}, Stages: []*model.Stage{model.HoldHot}, FromC: ptr(63.), Code: "An invented code", Clause: "1", Edition: "1"}
 	hot := p.History.At(model.Place{}, end)
+	switch v {
+	case rules.Met:
+		second.ToC, second.Typed["To"] = ptr(25.), "25 °C"
+	case rules.CannotTell:
+		second.ToC, second.Typed["To"] = ptr(hot+0.0005), "just above"
+	}
 	value := p.History.At(model.Place{}, 6300)
 	return rules.Judgement{Verdict: v, Findings: []rules.Finding{
 		{Limit: core, Level: "must", Verdict: rules.Met, Value: ptr(14.0987654), Required: ptr(2.), Unit: "min", MarginK: ptr(value - 70), MarginS: ptr(725.92592),
@@ -80,7 +86,7 @@ func roastJudgement(p *Product, v rules.Verdict) rules.Judgement {
 		{Limit: first, Level: "must", Verdict: rules.Met, Value: ptr(101.26), Required: ptr(120.), Unit: "min", MarginK: ptr(3.1), MarginS: ptr(18.7 * 60),
 			AtS: ptr(12000.), Place: &model.Place{}, PlaceName: "centre", ClockStartS: ptr(6800.), ClockEndS: ptr(12000.), Cells: []cell.Ref{first.At}, Why: "The place falls to 70 °F in 101 min.",
 			Cautions: []string{"lethality without floor"}},
-		{Limit: second, Level: "must", Verdict: v, Value: &hot, Required: ptr(5.), Unit: "°C", MarginK: ptr(5 - hot), AtS: ptr(end), Place: &model.Place{}, PlaceName: "centre", Cells: []cell.Ref{second.At}, Why: "The stage ends too early.",
+		{Limit: second, Level: "must", Verdict: v, Value: &hot, Required: second.ToC, Unit: "°C", MarginK: ptr(*second.ToC - hot), AtS: ptr(end), Place: &model.Place{}, PlaceName: "centre", Cells: []cell.Ref{second.At}, Why: "The stage ends too early.",
 			Notes: []string{"rose above From again at 1 h 05 min"}, LowConductivity: v == rules.NotMet},
 		{Limit: lid, Level: "must", Verdict: rules.NotApplicable, Why: "The process has no stage hold hot."},
 	}, Groups: []rules.GroupFinding{{Group: "Chilling", AnyOf: true, Verdict: v, DecidedBy: "Chill to store"}}}

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"sort"
 	"strings"
 
 	"slowpoint/model"
@@ -100,10 +101,8 @@ func (x *sheet) operator() {
 		d.para(shorten(d.clean(say("operator process", p.Process, len(p.History.Spans), duration(p.History.EndS(), nearest))), frameWide, kitchen, false), style{size: kitchen, after: 2})
 	}
 	x.verdictBox()
-	x.operatorChart()
-	x.checks()
-	x.lever()
-	x.blanks()
+	x.operatorChart(x.advice(true))
+	x.advice(false)
 }
 
 // verdictBox is the word in large type with one sentence beside it.
@@ -125,17 +124,18 @@ func (x *sheet) verdictBox() {
 	d.y += h + 3
 }
 
-// operatorChart shows the slowest place and the limits.
-func (x *sheet) operatorChart() {
+// operatorChart shows the slowest place and the limits, as high as the page allows.
+func (x *sheet) operatorChart(below float64) {
 	if x.p.History == nil {
 		return
 	}
 	d := x.doc
-	f := d.head.history(x.p, x.decides, kitchen, 92, false)
-	const h = 82
-	f.draw(d.canvas(d.left, d.y, frameWide, h))
+	sentence := x.slowestSentence()
+	lines := wrap(d.clean(sentence), frameWide, kitchen, false)
+	h := min(max(bottomY-d.y-below-float64(len(lines))*height(kitchen)-3, 40), 86)
+	d.head.history(x.p, x.decides, kitchen, 92, false).draw(d.canvas(d.left, d.y, frameWide, h))
 	d.y += h + 1
-	d.para(x.slowestSentence(), style{size: kitchen, after: 2})
+	d.para(sentence, style{size: kitchen, after: 2})
 }
 
 // slowestSentence says what the line of the slowest place shows.
@@ -147,7 +147,7 @@ func (x *sheet) slowestSentence() string {
 			break
 		}
 		c := hist.At(x.decides.place, sp.EndS)
-		s = append(s, say("at the end of", sp.Step.Name, duration(sp.EndS, nearest), h.temperature(c, nearest)))
+		s = append(s, say("at the end of", sp.Step.Name, duration(sp.EndS, nearest), h.temperature(c, x.cautious(sp.EndS))))
 	}
 	key := "chart sentence"
 	if hist == x.p.Low {
@@ -159,20 +159,34 @@ func (x *sheet) slowestSentence() string {
 	return say(key, x.decides.placeName, strings.Join(s, "; "))
 }
 
-// checks says what to check with the probe, where and when.
-func (x *sheet) checks() {
-	d := x.doc
-	d.para(say("checks title"), style{size: 13, bold: true, after: 0.8})
-	n := 0
+// cautious is the rounding of a course to the unfavourable side: down while heating, up otherwise.
+func (x *sheet) cautious(t float64) rounding {
+	for _, sp := range x.decides.history.Spans {
+		if t <= sp.EndS && sp.Step.Stage != nil && sp.Step.Stage.Heats {
+			return down
+		} else if t <= sp.EndS {
+			return up
+		}
+	}
+	return up
+}
+
+// checks says what to check with the probe, where and when, in the order of time.
+func (x *sheet) checks() []string {
+	var due []*rules.Finding
 	seen := map[string]bool{}
 	for _, f := range x.order {
 		if f.Limit == nil || f.Level != "must" || f.Verdict == rules.NotApplicable || f.Place == nil && f.AtS == nil || seen[f.Limit.Name] {
 			continue
 		}
 		seen[f.Limit.Name] = true
-		if n++; n > 3 {
+		if due = append(due, f); len(due) == 3 {
 			break
 		}
+	}
+	sort.SliceStable(due, func(i, j int) bool { return instant(due[i]) < instant(due[j]) })
+	var out []string
+	for _, f := range due {
 		place := f.PlaceName
 		if place == "" {
 			place = x.decides.placeName
@@ -181,12 +195,20 @@ func (x *sheet) checks() {
 		if finite(f.AtS) {
 			when = say("check at", duration(*f.AtS, nearest), x.stepAt(*f.AtS))
 		}
-		d.item(fmt.Sprintf("%d.", n), say("check", when, place, x.head.asks(f.Limit)), kitchen)
+		out = append(out, say("check", when, place, x.head.asks(f.Limit)))
 	}
-	if n == 0 {
-		d.item("–", say("check nothing"), kitchen)
+	if len(out) == 0 {
+		out = append(out, say("check nothing"))
 	}
-	d.y++
+	return out
+}
+
+// instant is when a finding is decided, s; a finding without one comes last.
+func instant(f *rules.Finding) float64 {
+	if finite(f.AtS) {
+		return *f.AtS
+	}
+	return math.Inf(1)
 }
 
 // stepAt is the name of the step at an instant, s.
@@ -199,42 +221,59 @@ func (x *sheet) stepAt(t float64) string {
 	return ""
 }
 
-func (x *sheet) lever() {
+// advice writes what to check and what helps most, and the blanks; dry it only tells how high that is, mm.
+func (x *sheet) advice(dry bool) float64 {
 	d := x.doc
-	s := x.p.Lever
-	if s == "" {
-		s = say("lever none")
+	lever := x.p.Lever
+	if lever == "" {
+		lever = say("lever none")
 	}
-	d.para(say("lever title"), style{size: 13, bold: true, after: 0.8})
-	d.para(s, style{size: kitchen, after: 2})
-}
-
-// blanks is room for readings and initials, as many rows as the page has left.
-func (x *sheet) blanks() {
-	d := x.doc
-	citation := ""
+	checks := x.checks()
+	foot := say("operator decides")
 	for _, f := range x.order {
 		if f.Limit != nil && bare(f.Limit) && f.Verdict != rules.NotApplicable {
-			citation = say("operator uncited")
+			foot += say("operator uncited")
+			break
 		}
 	}
-	foot := wrap(d.clean(say("operator decides")+citation), frameWide, kitchen, false)
-	room := bottomY - d.y - float64(len(foot))*height(kitchen) - 2 - 8.5
-	n := max(2, min(6, int(room/8.5)))
-	if room < 17 {
-		d.page()
+	if dry {
+		n := len(wrap(d.clean(lever), frameWide, kitchen, false)) + len(wrap(d.clean(foot), frameWide, kitchen, false))
+		for _, s := range checks {
+			n += len(wrap(d.clean(s), frameWide-widthMM("1.  ", kitchen, false), kitchen, false))
+		}
+		return float64(n)*height(kitchen) + 2*height(13) + float64(len(checks)) + 9 + 3*blankTall
 	}
-	cols := []float64{32, 32, 46, 34, 36}
+	d.para(say("checks title"), style{size: 13, bold: true, after: 0.8})
+	for i, s := range checks {
+		d.item(fmt.Sprintf("%d.", i+1), s, kitchen)
+	}
+	d.y++
+	d.para(say("lever title"), style{size: 13, bold: true, after: 0.8})
+	d.para(lever, style{size: kitchen, after: 2})
+	x.blanks(foot)
+	return 0
+}
+
+// blankTall is the height of a row to write in, mm.
+const blankTall = 8.5
+
+// blanks is room for readings and initials, as many rows as the page has left.
+func (x *sheet) blanks(foot string) {
+	d := x.doc
+	last := wrap(d.clean(foot), frameWide, kitchen, false)
+	room := bottomY - d.y - float64(len(last))*height(kitchen) - 2
+	n := max(2, min(6, int(room/blankTall)-1))
+	d.need(float64(n+1)*blankTall + 2 + float64(len(last))*height(kitchen))
 	at := d.left
-	for i, w := range cols {
+	for i, w := range []float64{32, 32, 46, 34, 36} {
 		d.put(at+1.5, d.y+5.5, say([...]string{"blank date", "blank time", "blank place", "blank reading", "blank initials"}[i]), kitchen, true)
 		for r := 0; r <= n; r++ {
-			d.frame(at, d.y+float64(r)*8.5, w, 8.5, 0.7)
+			d.frame(at, d.y+float64(r)*blankTall, w, blankTall, 0.7)
 		}
 		at += w
 	}
-	d.y += float64(n+1)*8.5 + 2
-	for _, s := range foot {
+	d.y += float64(n+1)*blankTall + 2
+	for _, s := range last {
 		d.y += height(kitchen)
 		d.put(d.left, d.y-0.28*height(kitchen), s, kitchen, false)
 	}
@@ -283,7 +322,7 @@ func (x *sheet) front() {
 	d.heading(say("plan title"), 1, 20)
 	d.pairs(rows, 45)
 	x.signatures("sign prepared", "sign reviewed", "sign responsible")
-	d.para(strings.Join(CautionText(), " "), style{size: small, after: 1})
+	d.para(strings.Join(CautionText()[:2], " ")+say("see cautions"), style{size: small, after: 1})
 }
 
 func (x *sheet) problems(ps cell.Errors) {
@@ -421,7 +460,7 @@ func (x *sheet) card(f *rules.Finding) {
 		{say("card citation"), x.cited(l)},
 		{say("card hazard"), joined(prefixed("CCP ", l.CCP), l.Hazard, l.Status, l.Note)},
 		{say("card cells"), refs(f.Cells)},
-	}, 32)
+	}, 36)
 }
 
 // whereAsked is the place that the limit is about, as typed.
@@ -490,8 +529,7 @@ func (x *sheet) predicted() {
 	if x.p.History == nil || x.p.History.Recorded {
 		return
 	}
-	d.page()
-	d.heading(say("predicted title"), 0, 40)
+	d.heading(say("predicted title"), 0, 118)
 	d.text(say("predicted note"))
 	d.heading(say("course title"), 1, 95)
 	h.history(x.p, x.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 88))
@@ -524,8 +562,8 @@ func (x *sheet) slowest() {
 		if i := sampleAt(s.TimesS, sp.EndS); i >= 0 && i < len(s.Coldest) && i < len(s.Hottest) {
 			cold, hot = h.temperature(s.Coldest[i], down), h.temperature(s.Hottest[i], up)
 			if i < len(s.ColdestAt) && i < len(s.HottestAt) {
-				cold += ", " + placeWords(p.Product.Shape, s.ColdestAt[i])
-				hot += ", " + placeWords(p.Product.Shape, s.HottestAt[i])
+				cold += ", " + x.extremePlace(i, s.Coldest, s.ColdestAt)
+				hot += ", " + x.extremePlace(i, s.Hottest, s.HottestAt)
 			}
 		}
 		name := sp.Step.Name
@@ -534,7 +572,7 @@ func (x *sheet) slowest() {
 		}
 		rows = append(rows, []string{name, duration(sp.StartS, nearest), duration(sp.EndS, nearest), x.mediumAtEnd(&sp), cold, hot})
 	}
-	x.table([]col{{title: say("col step"), wide: 38, bold: true}, {title: say("col start"), wide: 20}, {title: say("col end"), wide: 20}, {title: say("col medium"), wide: 26},
+	x.table([]col{{title: say("col step"), wide: 34, bold: true}, {title: say("col start"), wide: 20}, {title: say("col end"), wide: 20}, {title: say("col medium"), wide: 30},
 		{title: say("col coldest"), wide: 38}, {title: say("col hottest"), wide: 38}}, rows, small)
 	x.text(x.moves())
 }
@@ -560,6 +598,15 @@ func sampleAt(times []float64, t float64) int {
 	return -1
 }
 
+// extremePlace words where the coldest or hottest place is at a sample; a hundredth of a degree from the centre is the centre,
+// for a food of one temperature has no place of its own.
+func (x *sheet) extremePlace(i int, c []float64, at []model.Place) string {
+	if pts := x.p.Samples.Points; len(pts) > 0 && i < len(pts[0]) && math.Abs(pts[0][i]-c[i]) < 0.01 {
+		return placeWords(x.p.Product.Shape, model.Place{})
+	}
+	return placeWords(x.p.Product.Shape, at[i])
+}
+
 // moves says in words how the coldest and the hottest place move.
 func (x *sheet) moves() string {
 	s, shape := &x.p.Samples, x.p.Product.Shape
@@ -568,17 +615,17 @@ func (x *sheet) moves() string {
 	}
 	var out []string
 	for _, sp := range x.p.History.Spans {
-		at, what := s.HottestAt, say("hottest")
+		at, c, what := s.HottestAt, s.Hottest, say("hottest")
 		if sp.Step.Stage != nil && sp.Step.Stage.Heats {
-			at, what = s.ColdestAt, say("coldest")
+			at, c, what = s.ColdestAt, s.Coldest, say("coldest")
 		}
 		first, last := "", ""
 		for i, t := range s.TimesS {
-			if t > sp.StartS && t <= sp.EndS && i < len(at) {
+			if t > sp.StartS && t <= sp.EndS && i < len(at) && i < len(c) {
+				last = x.extremePlace(i, c, at)
 				if first == "" {
-					first = placeWords(shape, at[i])
+					first = last
 				}
-				last = placeWords(shape, at[i])
 			}
 		}
 		switch {
@@ -601,10 +648,10 @@ func (x *sheet) profileSentence(times []float64) string {
 		a, b, c := x.decides.place, x.decides.place, x.decides.place
 		a.UpM, b.UpM, c.UpM = lo, (lo+hi)/2, hi
 		if lo == 0 {
-			s = append(s, say("profile round", duration(t, nearest), x.head.temperature(hist.At(a, t), nearest), x.head.temperature(hist.At(c, t), nearest)))
+			s = append(s, say("profile round", duration(t, nearest), x.head.temperature(hist.At(a, t), x.cautious(t)), x.head.temperature(hist.At(c, t), x.cautious(t))))
 		} else {
-			s = append(s, say("profile flat", duration(t, nearest), x.head.temperature(hist.At(a, t), nearest), x.head.temperature(hist.At(b, t), nearest),
-				x.head.temperature(hist.At(c, t), nearest)))
+			s = append(s, say("profile flat", duration(t, nearest), x.head.temperature(hist.At(a, t), x.cautious(t)), x.head.temperature(hist.At(b, t), x.cautious(t)),
+				x.head.temperature(hist.At(c, t), x.cautious(t))))
 		}
 	}
 	return say("profile sentence", strings.Join(s, "; "))

@@ -2,6 +2,7 @@ package report
 
 import (
 	"math"
+	"sort"
 
 	"slowpoint/model"
 )
@@ -9,18 +10,19 @@ import (
 // sketch draws the section of a product with the slowest place marked; it takes height mm of the page.
 func (d *doc) sketch(p *model.Product, at model.Place, name string, h float64) {
 	d.need(h)
-	s := section{d: d, p: p, at: at, name: name, x: d.left, y: d.y, h: h}
+	s := section{d: d, p: p, at: at, name: name, x: d.left, y: d.y, h: h, x0: d.left}
 	switch p.Shape {
 	case model.Cylinder, model.Sphere:
 		s.round()
 	case model.ShortCylinder:
-		s.box(frameWide*0.5, p.Size.DiameterM, p.Size.LengthM, at.AcrossM, "", say("size diameter"), say("size length"), true)
+		s.box(p.Size.DiameterM, p.Size.LengthM, func(q model.Place) float64 { return q.AcrossM }, "", say("size diameter"), say("size length"), true)
 	case model.Bar:
-		s.box(frameWide*0.5, p.Size.WidthM, p.Size.ThicknessM, at.AcrossM, "", say("size width"), say("size thickness"), true)
+		s.box(p.Size.WidthM, p.Size.ThicknessM, func(q model.Place) float64 { return q.AcrossM }, "", say("size width"), say("size thickness"), true)
 	case model.Brick:
-		s.box(0, p.Size.WidthM, p.Size.ThicknessM, at.AcrossM, say("sketch across"), say("size width"), say("size thickness"), true)
-		s.x += frameWide / 2
-		s.box(0, p.Size.LengthM, p.Size.ThicknessM, at.AlongM, say("sketch along"), say("size length"), say("size thickness"), false)
+		s.x -= 6
+		s.box(p.Size.WidthM, p.Size.ThicknessM, func(q model.Place) float64 { return q.AcrossM }, say("sketch across"), say("size width"), say("size thickness"), false)
+		s.x += 64
+		s.box(p.Size.LengthM, p.Size.ThicknessM, func(q model.Place) float64 { return q.AlongM }, say("sketch along"), say("size length"), say("size thickness"), true)
 	case model.Stirred:
 		s.pot()
 	default:
@@ -36,6 +38,7 @@ type section struct {
 	at      model.Place
 	name    string
 	x, y, h float64
+	x0      float64 // the left edge of the frame
 }
 
 func (s *section) line(x, y, x2, y2 float64) {
@@ -45,33 +48,57 @@ func (s *section) line(x, y, x2, y2 float64) {
 	s.d.pdf.Line(x, y, x2, y2)
 }
 
-// cross marks the slowest place and writes its name beside it, on white.
-func (s *section) cross(x, y, right float64) {
-	p := s.d.pdf
-	p.SetDrawColor(0, 0, 0)
-	p.SetLineWidth(1.8 * mmPerPt)
-	p.Line(x-2.2, y-2.2, x+2.2, y+2.2)
-	p.Line(x-2.2, y+2.2, x+2.2, y-2.2)
-	p.SetLineWidth(0.7 * mmPerPt)
-	p.Circle(x, y, 3.4, "D")
-	s.line(x+3.4, y, right-1.5, y)
-	lines := wrap(s.d.clean(say("sketch slowest", s.name)), 44, small, true)
-	for i, t := range lines {
-		s.d.put(right, y+1.2+float64(i)*height(small), t, small, true)
-	}
+// mark is a place in a section with its words.
+type mark struct {
+	x, y  float64 // on the page, mm
+	words string
+	probe bool
 }
 
-// probes marks the user's own places that lie in the section: across is along the width of the picture.
-func (s *section) probes(to func(model.Place) (float64, float64)) {
+// marks draws the slowest place as a ringed cross and the user's places as squares. With words, each is led to its name at the
+// right of x = right, from the top down; names are moved apart.
+func (s *section) marks(to func(model.Place) (float64, float64), right float64, words bool) {
+	cx, cy := to(s.at)
+	all := []mark{{cx, cy, say("sketch slowest", s.name), false}}
 	for _, pt := range s.p.Points {
-		if pt.Place == s.at || pt.Name == "centre" {
+		if pt.Place != s.at && pt.Name != "centre" && len(all) < 6 {
+			x, y := to(pt.Place)
+			all = append(all, mark{x, y, pt.Name, true})
+		}
+	}
+	p := s.d.pdf
+	p.SetDrawColor(0, 0, 0)
+	for _, m := range all {
+		if m.probe {
+			p.SetLineWidth(0.9 * mmPerPt)
+			p.Rect(m.x-1.1, m.y-1.1, 2.2, 2.2, "D")
 			continue
 		}
-		x, y := to(pt.Place)
-		s.d.pdf.SetDrawColor(0, 0, 0)
-		s.d.pdf.SetLineWidth(0.9 * mmPerPt)
-		s.d.pdf.Rect(x-1.3, y-1.3, 2.6, 2.6, "D")
-		s.d.put(x-1.3-1-widthMM(s.d.clean(pt.Name), small, false), y+1.2, s.d.clean(pt.Name), small, false)
+		p.SetLineWidth(1.5 * mmPerPt)
+		p.Line(m.x-1.8, m.y-1.8, m.x+1.8, m.y+1.8)
+		p.Line(m.x-1.8, m.y+1.8, m.x+1.8, m.y-1.8)
+		p.SetLineWidth(0.7 * mmPerPt)
+		p.Circle(m.x, m.y, 2.6, "D")
+	}
+	if !words {
+		return
+	}
+	sort.SliceStable(all, func(i, j int) bool { return all[i].y < all[j].y })
+	next := s.y + 1
+	for _, m := range all {
+		lines := wrap(s.d.clean(m.words), s.x0+frameWide-right-9, small, !m.probe)
+		tall := float64(len(lines)) * height(small)
+		y := max(next, m.y-height(small)/2)
+		next = y + tall + 1
+		reach := 2.6
+		if m.probe {
+			reach = 1.1
+		}
+		s.line(m.x+reach, m.y, right+2, y+height(small)/2)
+		s.line(right+2, y+height(small)/2, right+7, y+height(small)/2)
+		for k, t := range lines {
+			s.d.put(right+8.5, y+(float64(k)+0.72)*height(small), t, small, !m.probe)
+		}
 	}
 }
 
@@ -118,9 +145,7 @@ func (s *section) slab() {
 	t := s.p.Size.ThicknessM
 	s.measure(x-6, y, x-6, y+h, say("size thickness")+" "+mm(t))
 	to := func(pl model.Place) (float64, float64) { return x + w/2, y + h/2 - pl.UpM/t*h }
-	cx, cy := to(s.at)
-	s.cross(cx, cy, x+w+4)
-	s.probes(func(pl model.Place) (float64, float64) { a, b := to(pl); return a - 18, b })
+	s.marks(to, x+w, true)
 }
 
 // round is a ball or the cut through a long round piece.
@@ -133,41 +158,29 @@ func (s *section) round() {
 	p.Circle(cx, cy, r, "D")
 	s.measure(cx-r, cy+r+3, cx+r, cy+r+3, say("size diameter")+" "+mm(s.p.Size.DiameterM))
 	scale := r / (s.p.Size.DiameterM / 2)
-	s.cross(cx+s.at.UpM*scale, cy, cx+r+8)
-	s.probes(func(pl model.Place) (float64, float64) { return cx - pl.UpM*scale, cy })
+	s.marks(func(q model.Place) (float64, float64) { return cx + q.UpM*scale, cy }, cx+r+4, true)
 }
 
 // box is a rectangular section, or the section along the axis of a short cylinder; wide and tall in m.
-func (s *section) box(_ float64, wide, tall, across float64, caption, wideName, tallName string, named bool) {
+func (s *section) box(wide, tall float64, across func(model.Place) float64, caption, wideName, tallName string, words bool) {
 	roomW, roomH := 60.0, s.h-14
 	if caption != "" {
-		roomW = 44
+		roomW = 46
 	}
 	scale := min(roomW/wide, roomH/tall)
 	w, h := wide*scale, tall*scale
-	note := ""
 	if w < 8 || h < 8 {
 		w, h = max(w, 8), max(h, 8)
-		note = say("not to scale")
+		caption += say("not to scale")
 	}
 	x, y := s.x+14, s.y+5
 	s.outline(x, y, w, h)
 	if caption != "" {
-		s.d.put(x, y-1.5, caption+note, small, false)
-	} else if note != "" {
-		s.d.put(x, y-1.5, note, small, false)
+		s.d.put(x, y-1.5, caption, small, false)
 	}
-	s.measure(x-5, y, x-5, y+h, sizeWords(tallName, tall, h))
-	s.measure(x, y+h+3, x+w, y+h+3, wideName+" "+mm(wide))
-	to := func(ac, up float64) (float64, float64) { return x + w/2 + ac/wide*w, y + h/2 - up/tall*h }
-	cx, cy := to(across, s.at.UpM)
-	if !named {
-		s.name = ""
-	}
-	s.mark(cx, cy, x+w+3, named)
-	if named {
-		s.probes(func(pl model.Place) (float64, float64) { return to(pl.AcrossM, pl.UpM) })
-	}
+	s.measure(x-4, y, x-4, y+h, sizeWords(tallName, tall, h))
+	s.measure(x, y+h+3, x+w, y+h+3, sizeWords(wideName, wide, w))
+	s.marks(func(q model.Place) (float64, float64) { return x + w/2 + across(q)/wide*w, y + h/2 - q.UpM/tall*h }, x+w, words)
 }
 
 // sizeWords leaves the name away where the line is too short for it.
@@ -176,19 +189,6 @@ func sizeWords(name string, m, room float64) string {
 		return s
 	}
 	return mm(m)
-}
-
-// mark is a cross with or without words.
-func (s *section) mark(x, y, right float64, named bool) {
-	if named {
-		s.cross(x, y, right)
-		return
-	}
-	p := s.d.pdf
-	p.SetDrawColor(0, 0, 0)
-	p.SetLineWidth(1.8 * mmPerPt)
-	p.Line(x-2.2, y-2.2, x+2.2, y+2.2)
-	p.Line(x-2.2, y+2.2, x+2.2, y-2.2)
 }
 
 // pot is a vessel whose whole content has one temperature.

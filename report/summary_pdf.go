@@ -119,4 +119,3 @@ func (d *doc) noted() {
 		d.text(say("summary more", len(ps)-most))
 	}
 }
-
