@@ -61,7 +61,7 @@ func (q *Quantity) Parse(text string, heading *Unit, d Decimal) (Value, *Mistake
 	}
 	total, n := 0.0, 0
 	var last *Unit
-	own := false
+	own, typedUnit := false, ""
 	for rest := s; n == 0 || rest != ""; n++ {
 		x, after, m := number(rest, d)
 		if m != nil {
@@ -80,7 +80,7 @@ func (q *Quantity) Parse(text string, heading *Unit, d Decimal) (Value, *Mistake
 		u := heading
 		switch word = strings.TrimSpace(word); {
 		case word != "":
-			own = true
+			own, typedUnit = true, word
 			if u = q.unitOfCell(word); u == nil {
 				return Value{}, q.noUnit(word)
 			}
@@ -104,6 +104,9 @@ func (q *Quantity) Parse(text string, heading *Unit, d Decimal) (Value, *Mistake
 	}
 	if math.IsNaN(total) || math.IsInf(total, 0) {
 		return Value{}, q.noNumber(s)
+	}
+	if own && n == 1 {
+		return Value{total, strings.TrimSpace(strings.TrimSuffix(s, typedUnit)) + " " + last.Name()}, nil
 	}
 	if own || last == nil {
 		return Value{total, s}, nil

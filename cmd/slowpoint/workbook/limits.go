@@ -1,3 +1,489 @@
 package workbook
 
-func (r *reader) readLimits() {}
+import (
+	"regexp"
+	"sort"
+	"strconv"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/model/unit"
+	"slowpoint/rules"
+)
+
+// limits is what belongs to the sheet Limits while it is read.
+type limits struct {
+	*reader
+	tables   map[string]*timeTable
+	groups   map[string]*group
+	inLimits map[string]bool // groups that limits name, by key
+	seen     map[string]int  // row of each limit
+}
+
+// timeTable is the rows of one name in Tables.
+type timeTable struct {
+	rules.Table
+	because  cell.Errors
+	readings []cell.Reading
+}
+
+// group is a row of Groups.
+type group struct {
+	rules.Group
+	line *line
+}
+
+// readLimits reads Tables, Groups and Limits. A limit with faults is kept, so that it is judged as cannot tell and not left out.
+func (r *reader) readLimits() {
+	ls := &limits{reader: r, tables: map[string]*timeTable{}, groups: map[string]*group{}, inLimits: map[string]bool{}, seen: map[string]int{}}
+	ls.readTables()
+	ls.readGroups()
+	t := r.tables["Limits"]
+	if t == nil {
+		return
+	}
+	for _, l := range t.lines {
+		ls.inLimits[key(l.entry("Group").text)] = true
+	}
+	ls.checkGroups()
+	for _, l := range t.lines {
+		ls.read(l)
+	}
+}
+
+func (ls *limits) readTables() {
+	t := ls.reader.tables["Tables"]
+	if t == nil {
+		return
+	}
+	for _, l := range t.lines {
+		name, at, time := l.words("Table"), l.value("Temperature"), l.value("Time")
+		if name == "" {
+			continue
+		}
+		tt := ls.tables[key(name)]
+		if tt == nil {
+			tt = &timeTable{Table: rules.Table{At: l.ref(), Name: name}}
+			ls.tables[key(name)] = tt
+		}
+		if at != nil && time != nil {
+			tt.Rows = append(tt.Rows, rules.Row{At: l.ref(), C: at.Computed, S: time.Computed, Typed: at.Typed + ", " + time.Typed})
+		}
+		tt.because = append(tt.because, l.because...)
+		tt.readings = append(tt.readings, l.readings...)
+	}
+}
+
+func (ls *limits) readGroups() {
+	t := ls.reader.tables["Groups"]
+	if t == nil {
+		return
+	}
+	for _, l := range t.lines {
+		g := &group{line: l}
+		g.At, g.Name, g.AnyOf, g.Within = l.ref(), l.words("Group"), l.choice("Join") == "any of", l.words("Within")
+		if g.Name == "" {
+			continue
+		}
+		if first := ls.groups[key(g.Name)]; first != nil {
+			l.fault("Group", g.Name, duplicate, strconv.Itoa(first.At.Row), "group")
+			first.line.because = append(first.line.because, l.because...)
+			continue
+		}
+		ls.groups[key(g.Name)] = g
+		ls.plan.Groups = append(ls.plan.Groups, g.Group)
+	}
+}
+
+// checkGroups looks for groups that lie within themselves, within nothing, or that nothing belongs to.
+func (ls *limits) checkGroups() {
+	held := map[string]bool{}
+	for _, pg := range ls.plan.Groups {
+		held[key(pg.Within)] = true
+	}
+	for _, pg := range ls.plan.Groups {
+		g := ls.groups[key(pg.Name)]
+		if !ls.inLimits[key(g.Name)] && !held[key(g.Name)] {
+			g.line.fault("Group", g.Name, groupEmpty)
+		}
+		if g.Within == "" {
+			continue
+		}
+		if ls.groups[key(g.Within)] == nil && !ls.inLimits[key(g.Within)] {
+			var known []string
+			for _, o := range ls.plan.Groups {
+				known = append(known, o.Name)
+			}
+			g.line.fault("Within", g.Within, groupUnknown, meant(g.Within, known))
+			continue
+		}
+		path := []string{g.Within}
+		for o, n := ls.groups[key(g.Within)], 0; o != nil && n <= len(ls.groups); o, n = ls.groups[key(o.Within)], n+1 {
+			if key(o.Name) == key(g.Name) {
+				g.line.fault("Within", g.Within, groupCycle, strings.Join(path, ", "))
+				break
+			}
+			path = append(path, o.Within)
+		}
+	}
+}
+
+// read reads one row of Limits.
+func (ls *limits) read(l *line) {
+	lim := rules.Limit{At: l.ref(), Typed: map[string]string{}}
+	lim.Name = l.words("Limit")
+	if first := ls.seen[key(lim.Name)]; first > 0 && lim.Name != "" {
+		l.fault("Limit", lim.Name, duplicate, strconv.Itoa(first), "limit")
+	} else {
+		ls.seen[key(lim.Name)] = l.row.n
+	}
+	if w := l.choice("Rule"); w != "" {
+		lim.Kind = rules.Named(w)
+	}
+	concerned := ls.appliesTo(l, &lim)
+	ls.stages(l, &lim, concerned)
+	ls.where(l, &lim, concerned)
+	numbers(l, &lim)
+	lim.Clock = clockOf(l, &lim)
+	choices(l, &lim)
+	words := ls.citation(l, &lim)
+	var shared [][]cell.Reading
+	if name := l.words("Table"); name != "" {
+		if tt := ls.tables[key(name)]; tt == nil {
+			var known []string
+			for _, o := range ls.tables {
+				known = append(known, o.Name)
+			}
+			sort.Strings(known)
+			l.fault("Table", name, tableUnknown, meant(name, known))
+		} else {
+			lim.Table = &tt.Table
+			l.suffer(tt.because)
+			shared = append(shared, tt.readings)
+		}
+	}
+	for g, n := ls.groups[key(lim.Group)], 0; lim.Group != "" && g != nil && n <= len(ls.groups); g, n = ls.groups[key(g.Within)], n+1 {
+		l.suffer(g.line.because)
+		shared = append(shared, g.line.readings)
+	}
+	if lim.Kind != nil {
+		needs(l, lim.Kind)
+		if l.sound() {
+			for _, f := range lim.Faults() {
+				l.fault(f.Column, l.entry(f.Column).text, wordsNotFound, verb(f.Msg, l.filled(f.Column)), "", f.Hint)
+			}
+		}
+	} else {
+		lim.Kind = rules.Stated // never judged: the row is unreadable
+	}
+	if len(l.because) > 0 {
+		lim.Unreadable = l.because[0].Error()
+	}
+	for h := range l.t.place {
+		if l.filled(h) && lim.Typed[h] == "" && !strings.HasPrefix(h, "?") {
+			lim.Typed[h] = l.entry(h).text
+		}
+	}
+	for k, v := range words {
+		lim.Typed[k] = v
+	}
+	ls.plan.Limits = append(ls.plan.Limits, lim)
+	shared = append([][]cell.Reading{l.readings}, shared...)
+	for _, p := range concerned {
+		p.readings = append(p.readings, shared...)
+	}
+}
+
+// verb fits a sentence of its own behind a quoted text.
+func verb(msg string, quoted bool) string {
+	if quoted {
+		return "cannot stand here: " + msg
+	}
+	return strings.ToUpper(msg[:1]) + msg[1:]
+}
+
+// appliesTo reads whom a limit is for and gives those products.
+func (ls *limits) appliesTo(l *line, lim *rules.Limit) []*product {
+	typed := l.words("Applies to")
+	head, family, named := strings.Cut(typed, ":")
+	switch {
+	case typed == "":
+		return nil
+	case key(typed) == "all":
+		lim.Applies.All = true
+		return ls.products
+	case named && key(head) == "family":
+		var out []*product
+		var known []string
+		for _, p := range ls.products {
+			if p.Family != "" && key(p.Family) == key(family) {
+				out = append(out, p)
+				lim.Applies.Family = p.Family
+			}
+			known = append(known, p.Family)
+		}
+		if len(out) == 0 {
+			l.fault("Applies to", typed, familyUnknown, meant(family, known))
+			lim.Applies.Family = nearest(family, known) // its products cannot be told met
+		}
+		return out
+	}
+	if p := ls.byName[key(typed)]; p != nil {
+		lim.Applies.Product = p.Name
+		return []*product{p}
+	}
+	hint := meant(typed, append([]string{"all"}, ls.productNames()...))
+	for _, p := range ls.products {
+		if key(p.Family) == key(typed) {
+			hint = "; did you mean family: " + p.Family + "?"
+		}
+	}
+	l.fault("Applies to", typed, appliesUnknown, hint)
+	lim.Applies.Product = nearest(typed, ls.productNames())
+	return nil
+}
+
+// stages reads a stage, several joined by +, or a pair.
+func (ls *limits) stages(l *line, lim *rules.Limit, concerned []*product) {
+	typed := l.words("Stage")
+	if typed == "" {
+		if lim.Kind != nil && lim.Kind.Uses("Stage") && lim.Kind != rules.Delay && lim.Kind != rules.Duration {
+			l.note("Stage", "", "the whole chain", "blank: the whole chain is taken")
+		}
+		return
+	}
+	named := func(word string) *model.Stage {
+		for _, s := range model.Stages {
+			if key(word) == key(s.Name) || s.Also != "" && key(word) == key(s.Also) {
+				return s
+			}
+		}
+		l.fault("Stage", typed, stageUnknown, meant(word, stageNames), strings.Join(stageNames, ", "))
+		return nil
+	}
+	first, second, pair := strings.Cut(typed, ">")
+	if pair {
+		a, b := named(first), named(second)
+		if a != nil && b != nil {
+			lim.Stages, lim.Then = []*model.Stage{a}, b
+		}
+		if lim.Kind != nil && lim.Kind != rules.Delay {
+			l.fault("Stage", typed, noPair)
+		}
+	} else {
+		for _, w := range strings.Split(typed, "+") {
+			if s := named(w); s != nil {
+				lim.Stages = append(lim.Stages, s)
+			}
+		}
+	}
+	if !l.sound() {
+		return
+	}
+	for _, p := range concerned { // one product with one of the stages is enough
+		for i := range p.Steps {
+			for _, s := range append(lim.Stages, lim.Then) {
+				if s != nil && p.Steps[i].Stage == s {
+					return
+				}
+			}
+		}
+	}
+	e := stageNowhere.problem(l.at("Stage"), cell.Fault, "Stage", typed)
+	if len(concerned) > 0 && anySteps(concerned) {
+		ls.add(e) // the row itself is sound: its verdict is not applicable, or cannot tell
+	}
+}
+
+func anySteps(ps []*product) bool {
+	for _, p := range ps {
+		if len(p.Steps) > 0 {
+			return true
+		}
+	}
+	return false
+}
+
+// where reads which places a limit is about.
+func (ls *limits) where(l *line, lim *rules.Limit, concerned []*product) {
+	typed := l.words("Where")
+	if typed == "" {
+		lim.Where.Name = whereWords[0]
+		if lim.Kind != nil && lim.Kind.Uses("Where") {
+			l.note("Where", "", whereWords[0], "blank: every point is taken")
+		}
+		return
+	}
+	for _, w := range whereWords {
+		if key(w) == key(typed) {
+			lim.Where.Name = w
+			return
+		}
+	}
+	lacking, have := "", 0
+	known := append([]string(nil), whereWords...)
+	for _, p := range concerned {
+		found := false
+		for _, pt := range p.Points {
+			known = append(known, pt.Name)
+			if key(pt.Name) == key(typed) {
+				lim.Where.Name, found = pt.Name, true
+			}
+		}
+		if found {
+			have++
+		} else if lacking == "" {
+			lacking = p.Name
+		}
+	}
+	switch {
+	case have == 0:
+		lim.Where.Name = typed
+		l.fault("Where", typed, whereUnknown, meant(typed, known))
+	case lacking != "":
+		l.remark(cell.Warning, "Where", typed, whereLacking, lacking)
+	}
+}
+
+// numbers reads the columns of numbers, and keeps each as typed.
+func numbers(l *line, lim *rules.Limit) {
+	for _, c := range []struct {
+		heading string
+		field   **float64
+	}{
+		{"From", &lim.FromC}, {"To", &lim.ToC}, {"Time", &lim.TimeS}, {"Second time", &lim.SecondS},
+		{"Reference temperature", &lim.ReferenceC}, {"z", &lim.ZK}, {"z above the reference temperature", &lim.ZAboveK}, {"D", &lim.DS},
+		{"Log reductions", &lim.Logs}, {"Allowance", &lim.AllowanceK}, {"Humidity", &lim.HumidityPc}, {"Share of stage", &lim.SharePc},
+	} {
+		if v := l.value(c.heading); v != nil {
+			*c.field = &v.Computed
+			lim.Typed[c.heading] = v.Typed
+		}
+	}
+}
+
+// clockOf reads Clock starts.
+func clockOf(l *line, lim *rules.Limit) (c rules.Clock) {
+	typed := l.words("Clock starts")
+	if typed == "" {
+		return c
+	}
+	k := key(typed)
+	head, name, event := strings.Cut(k, ":")
+	at, ofN := strings.CutPrefix(k, "crossing of ")
+	switch {
+	case k == "crossing":
+		c.Crossing = true
+	case ofN:
+		v, m := unit.Temperature.Parse(at, nil, l.r.decimal)
+		if m != nil {
+			l.fault("Clock starts", typed, wordsNotFound, "does not name a temperature: "+strconv.Quote(at)+" "+m.Says, "", m.Mend)
+			return c
+		}
+		c.Crossing, c.AtC = true, &v.Computed
+	case event && (tidy(head) == "stage start" || tidy(head) == "stage end"):
+		var stage *model.Stage
+		for _, s := range model.Stages {
+			if tidy(name) == s.Name || s.Also != "" && tidy(name) == s.Also {
+				stage = s
+			}
+		}
+		if stage == nil {
+			l.fault("Clock starts", typed, stageUnknown, meant(name, stageNames), strings.Join(stageNames, ", "))
+		}
+		if tidy(head) == "stage start" {
+			c.Start = stage
+		} else {
+			c.End = stage
+		}
+	default:
+		l.fault("Clock starts", typed, clockUnknown)
+	}
+	return c
+}
+
+// choices reads the columns that take one of a few words.
+func choices(l *line, lim *rules.Limit) {
+	index := func(heading string, words []string) int {
+		if w := l.choice(heading); w != "" {
+			for i := range words {
+				if words[i] == w {
+					return i + 1
+				}
+			}
+		}
+		return 0
+	}
+	lim.Counting = rules.Counting(index("Counting", countWords))
+	lim.Compare = rules.Compare(index("Compare", compareWords))
+	lim.CompareTime = rules.Compare(index("Compare time", compareWords))
+	lim.Advice = l.choice("Level") == "advice"
+	if !l.filled("Level") {
+		l.note("Level", "", "must", "blank: must is taken")
+	}
+	lim.Status = l.choice("Status")
+	if e := l.entry("Answer"); e.kind == truth {
+		l.fault("Answer", e.text, isTruth, "yes, no, or words")
+	} else {
+		lim.Answer = l.words("Answer")
+	}
+}
+
+var monthClause = regexp.MustCompile(`(?i)^\d{1,2}[-. ](jan|feb|mar|apr|may|jun|jul|aug|sep|oct|nov|dec)[a-z]*\.?$|^(jan|feb|mar|apr|may|jun|jul|aug|sep|oct|nov|dec)[a-z]*[-. ]\d{2,4}$`)
+
+// citation reads where a limit comes from; what is missing, or what a spreadsheet seems to have changed, is a warning.
+// It returns what is to be printed where that is not the text of the cell.
+func (ls *limits) citation(l *line, lim *rules.Limit) map[string]string {
+	changed := map[string]string{}
+	for _, c := range []struct {
+		heading string
+		field   *string
+	}{
+		{"Group", &lim.Group}, {"CCP", &lim.CCP}, {"Hazard", &lim.Hazard}, {"Code", &lim.Code}, {"Clause", &lim.Clause}, {"Edition", &lim.Edition},
+		{"Issued by", &lim.IssuedBy}, {"Confirmed by", &lim.ConfirmedBy}, {"Confirmed on", &lim.ConfirmedOn}, {"Note", &lim.Note},
+	} {
+		*c.field = l.words(c.heading)
+		e := l.entry(c.heading)
+		if *c.field != e.text {
+			changed[c.heading] = *c.field
+		}
+		if c.heading != "Clause" && c.heading != "Edition" {
+			continue
+		}
+		switch {
+		case e.kind == figure && e.form == date, e.kind == text && l.t.grid.csv && monthClause.MatchString(e.text):
+			l.remark(cell.Warning, c.heading, *c.field, clauseDate, strings.ToLower(c.heading))
+		case e.kind == figure && (strings.ContainsAny(e.text, ".eE") || e.form != bare):
+			l.remark(cell.Warning, c.heading, *c.field, clauseDecimal, strings.ToLower(c.heading))
+		}
+	}
+	var lack []string
+	for _, h := range []string{"Code", "Clause", "Edition"} {
+		if !l.filled(h) {
+			lack = append(lack, h)
+		}
+	}
+	if len(lack) > 0 {
+		l.remark(cell.Warning, lack[0], "", noCitation, and(lack), isAre(len(lack)))
+	}
+	return changed
+}
+
+// needs holds the filled columns against those that the kind needs and may have.
+func needs(l *line, k *rules.Kind) {
+	for _, any := range k.Needs {
+		filled := false
+		for _, h := range any {
+			filled = filled || l.filled(h)
+		}
+		if !filled {
+			l.fault(any[0], "", limitNeeds, or(any), k.Name, or(any))
+		}
+	}
+	for _, c := range l.t.sheet.Columns {
+		if l.filled(c.Heading) && !k.Uses(c.Heading) {
+			l.fault(c.Heading, l.entry(c.Heading).text, limitUnused, k.Name, c.Heading)
+		}
+	}
+}

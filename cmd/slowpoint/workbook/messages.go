@@ -108,7 +108,7 @@ var (
 	surroundingsOnly = saying{"is given on a face of {1}, which has no temperature", "clear the cell"}
 
 	// limits
-	limitNeeds     = saying{"{1} is missing: the rule {2} needs {3}", "fill it"}
+	limitNeeds     = saying{"{1} is missing: the rule {2} needs it", "fill it"}
 	limitUnused    = saying{"is given, but the rule {1} does not use {2}", "clear the cell or choose another rule"}
 	stageUnknown   = saying{"is not a stage{1}", "choose from: {2}; join several by +, as cook + rest"}
 	stageNowhere   = saying{"is a stage of no step of the products that the limit applies to", "correct the stage, or take the row out"}
@@ -122,7 +122,7 @@ var (
 	clockUnknown   = saying{"does not say when the clock starts", "type crossing, crossing of 60 °C, stage start: NAME, or stage end: NAME"}
 	clockFrom      = saying{"is given, but a clock that starts at a stage does not use From", "clear From, or let the clock start at the crossing"}
 	clockNoFrom    = saying{"From is missing: the clock starts when the food falls to it", "fill From, or type crossing of N °C as Clock starts"}
-	noCitation     = saying{"{1} is missing", "name the document, clause and edition that the limit comes from; the report's front page says that it is missing"}
+	noCitation     = saying{"{1} {2} missing", "name the document, clause and edition that the limit comes from; the report's front page says that it is missing"}
 	clauseDate     = saying{"looks as if the spreadsheet had turned the {1} into a date", "type it as text (an apostrophe in front), as the code prints it"}
 	clauseDecimal  = saying{"looks as if the spreadsheet had turned the {1} into a decimal number: 1.10 becomes 1.1", "type it as text (an apostrophe in front), as the code prints it"}
 	groupUnknown   = saying{"is not a group of any limit or row of Groups{1}", "correct the name"}
