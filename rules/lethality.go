@@ -111,12 +111,16 @@ type killer struct {
 	refC, lnBelow, lnAbove float64 // lnBelow, lnAbove: ln10/z, 1/K
 	floorC                 float64 // nothing is credited below it; −Inf for none
 	shiftK                 float64 // added to every temperature
+	far                    float64 // stretches whose rates lie this many e-folds below the top are left out
 }
 
 // killer of a limit: the error lowers the food, the margin raises the reference temperature.
 func (v *view) killer(t tilt) killer {
 	l := v.l
-	k := killer{refC: *l.ReferenceC + t.ownK, lnBelow: math.Ln10 / *l.ZK, floorC: math.Inf(-1), shiftK: -t.errK}
+	k := killer{refC: *l.ReferenceC + t.ownK, lnBelow: math.Ln10 / *l.ZK, floorC: math.Inf(-1), shiftK: -t.errK, far: 30}
+	if t.rank {
+		k.far = 8
+	}
 	k.lnAbove = k.lnBelow
 	if l.ZAboveK != nil {
 		k.lnAbove = math.Ln10 / *l.ZAboveK
@@ -153,10 +157,10 @@ func (k killer) over(p path, ivs []interval) float64 {
 }
 
 // stretch adds up between two knots, split at the floor and at the reference temperature where z changes there. top is the
-// warmest temperature: stretches that are far below it are taken as straight, their share is below a part in a million; nothing is added for those.
+// warmest temperature: stretches far below it are taken as straight, and those whose share is nothing are left out.
 func (k killer) stretch(p path, i int, top float64) float64 {
 	a, b := p.c[i]+k.shiftK, p.c[i+1]+k.shiftK
-	if hi := math.Max(a, b); hi < k.floorC || p.t[i] == p.t[i+1] || (top-hi)*k.lnBelow > 14 {
+	if hi := math.Max(a, b); hi < k.floorC || p.t[i] == p.t[i+1] || (top-hi)*k.lnBelow > k.far {
 		return 0
 	}
 	if lo := math.Min(a, b); p.at == nil && lo >= k.floorC && (k.lnAbove == k.lnBelow || lo >= k.refC || math.Max(a, b) <= k.refC) {
@@ -186,7 +190,7 @@ func (k killer) stretch(p path, i int, top float64) float64 {
 		if lo, hi := math.Min(cs[n], cs[n+1]), math.Max(cs[n], cs[n+1]); lo < k.floorC-sameK && hi <= k.floorC+sameK {
 			continue
 		}
-		if p.at == nil || (top-math.Max(cs[n], cs[n+1]))*k.lnBelow > 9 {
+		if p.at == nil || (top-math.Max(cs[n], cs[n+1]))*k.lnBelow > 16 {
 			sum += k.straight(ts[n+1]-ts[n], cs[n], cs[n+1])
 		} else {
 			sum += k.gauss(p.at, ts[n], ts[n+1], cs[n], cs[n+1])

@@ -22,9 +22,7 @@ func judgeTable(v *view) Finding {
 			}
 		}
 		if best.verdict == Met && t == (tilt{}) {
-			if best.row.S > 0 {
-				v.sparse(&best, p, l.warmSide(best.row.C), best.row.S, lasting(best.row.S, 1))
-			}
+			best = v.shown(best, p, rows, top)
 			if best.row.C < 60-sameK {
 				best.cautions = append(best.cautions, "below 60 °C table row")
 			}
@@ -32,6 +30,22 @@ func judgeTable(v *view) Finding {
 		return best
 	}
 	return v.judgePlaces(q)
+}
+
+// shown replaces a row that the readings of a record are too far apart to show by one that they show, if there is one.
+func (v *view) shown(best outcome, p path, rows []*Row, top float64) outcome {
+	v.sparse(&best, p, v.l.warmSide(best.row.C), best.row.S, lasting(best.row.S, 1))
+	if best.sparse == "" {
+		return best
+	}
+	for _, row := range rows {
+		if o := v.row(p, tilt{}, row, top); o.verdict == Met {
+			if v.sparse(&o, p, v.l.warmSide(row.C), row.S, lasting(row.S, 1)); o.sparse == "" {
+				return o
+			}
+		}
+	}
+	return best
 }
 
 // row judges one row at one place, whose warmest temperature is top.

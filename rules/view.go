@@ -336,7 +336,7 @@ func (v *view) windows() []window {
 	return ws
 }
 
-// timed fills in the event clock and the end of the named stage, and tells whether the window has them.
+// timed fills in the event clock (a stage that ends as the next heating starts belongs to that heating) and the end of the named stage, and tells whether the window has them.
 func (v *view) timed(w *window) bool {
 	if len(v.l.Stages) > 0 {
 		w.stageTo = math.Inf(-1)
@@ -358,7 +358,7 @@ func (v *view) timed(w *window) bool {
 		case cl.Start == r.stage && r.a >= w.a && r.a < w.b:
 			w.clock = r.a
 			return true
-		case cl.End == r.stage && r.b > w.a && r.b <= w.b:
+		case cl.End == r.stage && r.b >= w.a && (r.b < w.b || w.last):
 			w.clock = r.b
 			return true
 		}

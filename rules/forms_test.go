@@ -1,0 +1,250 @@
+package rules
+
+import (
+	"strings"
+	"testing"
+
+	"slowpoint/model"
+)
+
+// st makes a list of stages.
+func st(s ...*model.Stage) []*model.Stage { return s }
+
+// crossing and after are the two ways a clock starts.
+var crossing = Clock{Crossing: true}
+
+func crossingOf(tC *float64) Clock   { return Clock{Crossing: true, AtC: tC} }
+func after(s *model.Stage) Clock     { return Clock{End: s} }
+func fromStart(s *model.Stage) Clock { return Clock{Start: s} }
+func fahrenheit(rows ...float64) *Table { // °F, min, °F, min, …
+	t := &Table{Name: "rows"}
+	for i := 0; i < len(rows); i += 2 {
+		t.Rows = append(t.Rows, Row{C: *f(rows[i]), S: 60 * rows[i+1]})
+	}
+	return t
+}
+
+// told is a course: spans and one or more traces "name@mm: course", judged against what is expected.
+type told struct {
+	name   string
+	spans  string
+	course string // of the centre; several courses as "centre: …; surface: …; medium: …"
+	want   Verdict
+}
+
+// history builds it.
+func (x told) history(t testing.TB) *model.History {
+	t.Helper()
+	if !strings.Contains(x.course, ";") {
+		return record(t, x.spans, x.course)
+	}
+	var traces []model.Trace
+	var medium *model.Trace
+	for i, part := range strings.Split(x.course, ";") {
+		name, words, _ := strings.Cut(strings.TrimSpace(part), ": ")
+		tr := trace(t, name, 10*float64(i), words)
+		if name == "medium" {
+			medium = &tr
+			continue
+		}
+		traces = append(traces, tr)
+	}
+	h, err := model.NewRecord(chain(t, x.spans), traces, medium)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return h
+}
+
+// form is one way in which codes word a limit.
+type form struct {
+	name   string // number in the list of forms, what it is, an example with its document and clause
+	limits []Limit
+	groups []Group
+	cases  []told
+}
+
+// forms are the thirty forms in which published codes word their limits, each on both sides. Clauses as seen in the documents
+// or their reprints; the figures are theirs, the courses are ours.
+var forms = []form{
+	{"A1 hold, °F: FDA Food Code 3-401.11(A)(1), 145 °F for 15 s", []Limit{{Kind: Hold, Stages: st(model.Cook), FromC: f(145), TimeS: c(15), Counting: Total}}, nil, []told{
+		{"15 s at 145 °F", "cook 0-60", "0:5 50:62.77777777777778 50.25:62.77777777777778 51:40 60:40", Met},
+		{"15 s at 62.7 °C", "cook 0-60", "0:5 50:62.7 50.25:62.7 51:40 60:40", NotMet},
+		{"12 s at 145 °F, readings close", "cook 0-60", "0:5 50:62.7 50.01:62.78 50.2:62.78 50.21:62.7 51:40 60:40", NotMet}}},
+	{"A1 hold: MHLW Japan, centre at 75 °C for 1 min", []Limit{{Kind: Hold, Stages: st(model.Cook), Where: Where{"centre"}, FromC: c(75), TimeS: min_(1), Counting: Continuous}}, nil, []told{
+		{"one minute", "cook 0-60", "0:5 40:75 41:75 60:60", Met}, {"two half minutes", "cook 0-60", "0:5 40:75 40.5:75 41:74 42:75 42.5:75 60:60", NotMet}}},
+	{"A1 hold: 9 CFR 315.2, 170 °F for 30 min", []Limit{{Kind: Hold, Stages: st(model.Cook), FromC: f(170), TimeS: min_(30), Counting: Total}}, nil, []told{
+		{"31 min", "cook 0-90", "0:5 40:76.7 71:76.7 90:60", Met}, {"29 min", "cook 0-90", "0:5 40:76.7 69:76.7 90:60", NotMet}}},
+	{"A2 instant: FDA Food Code 3-401.11(A)(3), 165 °F", []Limit{{Kind: Hold, Stages: st(model.Cook), FromC: f(165), TimeS: c(0), Counting: Total}}, nil, []told{
+		{"reached once", "cook 0-60", "0:5 50:73.9 60:60", Met}, {"a tenth short", "cook 0-60", "0:5 50:73.8 60:60", NotMet}}},
+	{"A2 instant: Scotland Sch. 4(3) reheat 82 °C; FSAI GN 15, 75 °C at once", []Limit{{Kind: Hold, Stages: st(model.Reheat), FromC: c(82), TimeS: c(0), Counting: Total}}, nil, []told{
+		{"exactly 82.0", "reheat 0-60", "0:5 50:82 60:82", Met}, {"81.9", "reheat 0-60", "0:5 50:81.9 60:80", NotMet}}},
+	{"A3 table: FSIS Appendix A, 6.5-log rows", []Limit{{Kind: HoldTable, Stages: st(model.Cook), Counting: Total, Table: fahrenheit(130, 112, 140, 12, 150, 67.0/60, 154, 27.0/60, 158, 0)}}, nil, []told{
+		{"missed 158 °F but 154 °F for 27 s", "cook 0-60", "0:5 30:67.8 30.45:67.8 30.5:55 31:50 60:50", Met},
+		{"total of two periods at 140 °F", "cook 0-60", "0:5 20:60 26:60 27:50 28:50 30:60 36:60 60:40", Met},
+		{"158 °F at once", "cook 0-60", "0:5 30:71 60:5", Met},
+		{"11 min at 140 °F", "cook 0-60", "0:5 20:60.1 30:60.1 31:50 60:40", NotMet},
+		{"no row below the first: hours at 129 °F", "cook 0-600", "0:53.9 600:53.9", NotMet}}},
+	{"A4 table with a second key: FSIS poultry, chicken of 1 % fat; the user copies the column", []Limit{{Kind: HoldTable, Stages: st(model.Cook), Counting: Total, Table: fahrenheit(140, 25.2, 150, 2.7, 160, 0.2)}}, nil, []told{
+		{"150 °F for 3 min", "cook 0-60", "0:5 30:65.6 33:65.6 60:20", Met}, {"150 °F for 2 min", "cook 0-60", "0:5 30:65.6 31:65.6 32:40 60:20", NotMet}}},
+	{"A5 integral: 70 °C, 2 min, z 7.5", []Limit{{Kind: Lethality, Stages: st(model.Cook), ReferenceC: c(70), ZK: c(7.5), TimeS: min_(2), FromC: c(55)}}, nil, []told{
+		{"65 °C for 10 min", "cook 0-60", "0:65 10:65 10.001:20 60:20", Met}, {"65 °C for 9 min", "cook 0-60", "0:65 9:65 9.001:20 60:20", NotMet}}},
+	{"A5 integral: ACMSF burgers, z 6", []Limit{{Kind: Lethality, Stages: st(model.Cook), ReferenceC: c(70), ZK: c(6), TimeS: min_(2)}}, nil, []told{
+		{"65 °C for 14 min", "cook 0-60", "0:65 14:65 14.001:20 60:20", Met}, {"65 °C for 10 min", "cook 0-60", "0:65 10:65 10.001:20 60:20", NotMet}}},
+	{"A5 integral: 90 °C, 10 min, z 9 below, 10 above", []Limit{{Kind: Lethality, Stages: st(model.Cook), ReferenceC: c(90), ZK: c(9), ZAboveK: c(10), TimeS: min_(10)}}, nil, []told{
+		{"80 °C for 130 min", "cook 0-150", "0:80 130:80 130.001:20 150:20", Met}, {"100 °C for 0.9 min", "cook 0-150", "0:100 0.9:100 0.901:20 150:20", NotMet}}},
+	{"A5 log reductions with D: 6 log, D70 20 s", []Limit{{Kind: Lethality, Stages: st(model.Cook), ReferenceC: c(70), ZK: c(7.5), DS: c(20), Logs: c(6)}}, nil, []told{
+		{"2 min at 70 °C", "cook 0-60", "0:70 2:70 2.001:20 60:20", Met}, {"1.9 min at 70 °C", "cook 0-60", "0:70 1.9:70 1.901:20 60:20", NotMet}}},
+	{"A5 log target without z: 9 CFR 318.17, 6.5 log Salmonella", []Limit{{Kind: Stated, Answer: ""}}, nil, []told{{"blank", "cook 0-60", "0:5 60:90", CannotTell}}},
+	{"A6 window: FSANZ 3.2.2 cl. 7(3)(a), 60 to 21 °C in 2 h", []Limit{{Kind: CoolWithin, FromC: c(60), ToC: c(21), TimeS: min_(120), Clock: crossing}}, nil, []told{
+		{"in 119 min", "cook 0-60, cool 60-300", "0:5 60:80 80:60 199:21 300:3", Met}, {"in 121 min", "cook 0-60, cool 60-300", "0:5 60:80 80:60 201:21 300:3", NotMet}}},
+	{"A6 window: Denmark, 65 to 10 °C in at most 4 h", []Limit{{Kind: CoolWithin, FromC: c(65), ToC: c(10), TimeS: min_(240), Clock: crossing}}, nil, []told{
+		{"exactly 240 min", "cook 0-60, cool 60-400", "0:5 60:65.5 61:65 301:10 400:3", Met}, {"241 min", "cook 0-60, cool 60-400", "0:5 60:66 61:65 302:10 400:3", NotMet}}},
+	{"A6 window: France 2009, 63 to 10 °C in LESS than 2 h", []Limit{{Kind: CoolWithin, FromC: c(63), ToC: c(10), TimeS: min_(120), Clock: crossing, CompareTime: LessThan}}, nil, []told{
+		{"119.9 min", "cook 0-60, cool 60-400", "0:5 60:64 61:63 180.9:10 400:3", Met}, {"exactly 120.0 min", "cook 0-60, cool 60-400", "0:5 60:64 61:63 181:10 400:3", NotMet}}},
+	{"A7 total form: FDA Food Code 3-501.14(A), 135 to 70 °F in 2 h and to 41 °F in 6 h from the same start", []Limit{
+		{Name: "a", Kind: CoolWithin, FromC: f(135), ToC: f(70), TimeS: min_(120), Clock: crossing, Group: "g"},
+		{Name: "b", Kind: CoolWithin, FromC: f(135), ToC: f(41), TimeS: min_(360), Clock: crossing, Group: "g"}}, []Group{{Name: "g"}}, []told{
+		{"60 min, then 290 min", "cook 0-60, cool 60-600", "0:5 60:70 70:57.22222222222222 130:21.11111111111111 420:5 600:2", Met},
+		{"121 min to 70 °F", "cook 0-60, cool 60-600", "0:5 60:70 70:57.22222222222222 191:21.11111111111111 400:5 600:2", NotMet}}},
+	{"A7 further form: Maine 10-144 c. 346, 2 h to 70 °F and a further 4 h to 41 °F", []Limit{
+		{Name: "a", Kind: CoolWithin, FromC: f(140), ToC: f(70), TimeS: min_(120), Clock: crossing, Group: "g"},
+		{Name: "b", Kind: CoolWithin, ToC: f(41), TimeS: min_(240), Clock: crossingOf(f(70)), Group: "g"}}, []Group{{Name: "g"}}, []told{
+		{"100 min, then 230 min", "cook 0-60, cool 60-600", "0:5 60:70 70:60 170:21.11111111111111 400:5 600:2", Met},
+		{"60 min, then 290 min", "cook 0-60, cool 60-600", "0:5 60:70 70:60 130:21.11111111111111 420:5 600:2", NotMet}}},
+	{"A8 clock from the end of cooking: FSAI GN 15, to 3 °C in 150 min", []Limit{{Kind: CoolWithin, ToC: c(3), TimeS: min_(150), Clock: after(model.Cook)}}, nil, []told{
+		{"140 min after the cook", "cook 0-60, rest 60-80, cool 80-300", "0:5 60:80 80:78 200:3 300:2", Met},
+		{"160 min after it", "cook 0-60, rest 60-80, cool 80-300", "0:5 60:80 80:78 220:3 300:2", NotMet}}},
+	{"A8 clock from the start of cooling: MHLW Japan, about 20 °C in 30 min", []Limit{{Kind: CoolWithin, ToC: c(20), TimeS: min_(30), Clock: fromStart(model.Cool)}}, nil, []told{
+		{"29 min", "cook 0-60, cool 60-120", "0:5 60:80 89:20 120:5", Met}, {"31 min", "cook 0-60, cool 60-120", "0:5 60:80 91:20 120:5", NotMet}}},
+	{"A9 window from a crossing in another stage: FDA Food Code 3-502.12, 34 °F within 48 h of reaching 41 °F", []Limit{{Kind: CoolWithin, ToC: f(34), TimeS: min_(2880), Clock: crossingOf(f(41))}}, nil, []told{
+		{"47 h", "cook 0-60, cool 60-300, store 300-4000", "0:5 60:80 300:5 3120:1.1 4000:0.5", Met}, {"50 h", "cook 0-60, cool 60-300, store 300-4000", "0:5 60:80 300:5 3300:1.1111 4000:0.5", NotMet}}},
+	{"A10 delay: FSIS Appendix B, chilling begins within 90 min of the end of cooking", []Limit{{Kind: Delay, Stages: st(model.Cook), Then: model.Cool, TimeS: min_(90)}}, nil, []told{
+		{"exactly 90 min", "cook 0-60, rest 60-150, cool 150-300", "0:5 60:80 300:5", Met}, {"91 min", "cook 0-60, rest 60-151, cool 151-300", "0:5 60:80 300:5", NotMet}}},
+	{"A10 duration: FDA Food Code 3-401.14(A), first heating at most 60 min", []Limit{{Kind: Duration, Stages: st(model.Cook), TimeS: min_(60), CompareTime: AtMost}}, nil, []told{
+		{"60 min", "cook 0-60, cool 60-100", "0:5 100:5", Met}, {"61 min", "cook 0-61, cool 61-100", "0:5 100:5", NotMet}}},
+	{"A11 band over one stage: FSIS Appendix A, 50 to 130 °F at most 6 h while heating", []Limit{{Kind: Band, Stages: st(model.Cook), FromC: f(50), ToC: f(130), TimeS: min_(360), Counting: Total}}, nil, []told{
+		{"350 min", "cook 0-500, cool 500-900", "0:10 350:54.5 500:60 900:20", Met}, {"370 min", "cook 0-500, cool 500-900", "0:10 371:54.5 500:60 900:20", NotMet}}},
+	{"A11 band over the whole chain: FSANZ 2 h/4 h, every period between 5 and 60 °C added", []Limit{{Kind: Band, FromC: c(5), ToC: c(60), TimeS: min_(240), Counting: Total}}, nil, []told{
+		{"three periods, 230 min", "cook 0-60, cool 60-200, store 200-500, reheat 500-560", "0:5 30:60 60:80 61:60 161:5 500:5 560:32", Met},
+		{"three periods, 280 min", "cook 0-60, cool 60-300, store 300-500, reheat 500-560", "0:5 30:60 60:80 61:60 251:5 500:5 560:32", NotMet}}},
+	{"A12 once only: England, Sch. 4(7), below 63 °C less than 2 h, one period", []Limit{{Kind: StayAbove, Stages: st(model.HoldHot), FromC: c(63), TimeS: min_(120), Counting: Once, CompareTime: LessThan}}, nil, []told{
+		{"119 min below", "hold hot 0-300", "0:70 100:70 101:62 220:62 221:64 300:64", Met},
+		{"exactly two hours", "hold hot 0-300", "0:63 1:60 119:60 120:63 300:63", NotMet},
+		{"two short periods", "hold hot 0-300", "0:70 100:70 101:62 110:62 111:64 150:64 151:60 160:64 300:64", NotMet}}},
+	{"A13 keep above: FDA Food Code 3-501.16(A)(1), 135 °F", []Limit{{Kind: StayAbove, Stages: st(model.HoldHot), FromC: f(135)}}, nil, []told{
+		{"57.3 °C", "hold hot 0-300", "0:70 300:57.3", Met}, {"57.2 °C", "hold hot 0-300", "0:70 299:57.2 300:60", NotMet}}},
+	{"A13 keep below: England Sch. 4(2), above 8 °C is the offence", []Limit{{Kind: StayBelow, Stages: st(model.HoldCold), ToC: c(8)}}, nil, []told{
+		{"exactly 8.0", "hold cold 0-300", "0:3 300:8", Met}, {"8.1", "hold cold 0-300", "0:3 299:8.1 300:4", NotMet}}},
+	{"A13 floor after the roast table: FDA Food Code 3-501.16(A)(1), 130 °F", []Limit{{Kind: StayAbove, Stages: st(model.HoldHot), FromC: f(130)}}, nil, []told{
+		{"54.5 °C", "hold hot 0-300", "0:70 300:54.5", Met}, {"54.0 °C, which is not 130 °F", "hold hot 0-300", "0:70 300:54", NotMet}}},
+	{"A14 outside a band: FDR Canada B.22.026, at most 40 °F or at least 140 °F", []Limit{{Kind: Outside, Stages: st(model.HoldHot), FromC: f(40), ToC: f(140)}}, nil, []told{
+		{"always hot", "hold hot 0-300", "0:70 300:60", Met}, {"a dip", "hold hot 0-300", "0:70 100:58 300:61", NotMet}}},
+	{"A14 outside, food OR air", []Limit{
+		{Name: "food", Kind: Outside, Stages: st(model.HoldHot), FromC: c(10), ToC: c(65), Group: "g"},
+		{Name: "air", Kind: Outside, Stages: st(model.HoldHot), FromC: c(10), ToC: c(65), Where: Where{"medium"}, Group: "g"}}, []Group{{Name: "g", AnyOf: true}}, []told{
+		{"air hot", "hold hot 0-300", "centre: 0:70 300:60; medium: 0:66 300:66", Met}, {"neither", "hold hot 0-300", "centre: 0:70 300:60; medium: 0:66 300:64", NotMet}}},
+	{"A15 excursion: Finland frozen, -18 °C with brief rises to -15 °C, the user's own 20 min", []Limit{
+		{Name: "a", Kind: StayBelow, Stages: st(model.Store), ToC: c(-18), TimeS: min_(20)}, {Name: "b", Kind: StayBelow, Stages: st(model.Store), ToC: c(-15)}}, nil, []told{
+		{"two rises of 15 min", "store 0-300", "0:-20 50:-18 55:-16 65:-18 100:-20 200:-18 205:-16 215:-18 300:-20", Met},
+		{"one of 25 min", "store 0-300", "0:-20 50:-18 55:-16 75:-18 300:-20", NotMet}, {"one to -14 °C", "store 0-300", "0:-20 50:-18 55:-14 60:-18 300:-20", NotMet}}},
+	{"A16 core and surface: South Africa R638 8(4), the surface not more than 2 °C beyond", []Limit{
+		{Name: "core", Kind: StayBelow, Stages: st(model.HoldCold), ToC: c(5), Where: Where{"centre"}, Group: "g"},
+		{Name: "surface", Kind: StayBelow, Stages: st(model.HoldCold), ToC: c(7), Where: Where{"surface"}, Group: "g"}}, []Group{{Name: "g"}}, []told{
+		{"4 and 6", "hold cold 0-300", "centre: 0:4 300:4; surface: 0:6 300:6", Met}, {"4 and 8", "hold cold 0-300", "centre: 0:4 300:4; surface: 0:6 200:8 300:6", NotMet}}},
+	{"A16 internal and surrounding air: Quebec 1.4.1, 4 °C", []Limit{
+		{Name: "in", Kind: StayBelow, Stages: st(model.HoldCold), ToC: c(4)}, {Name: "air", Kind: StayBelow, Stages: st(model.HoldCold), ToC: c(4), Where: Where{"medium"}}}, nil, []told{
+		{"both", "hold cold 0-300", "centre: 0:4 300:4; medium: 0:3 300:4", Met}, {"air too warm", "hold cold 0-300", "centre: 0:4 300:4; medium: 0:3 300:5", NotMet}}},
+	{"A17 a place for each clause: surface reached 145 °F, FDA Food Code 3-401.11(C)", []Limit{{Kind: Hold, Stages: st(model.Cook), FromC: f(145), TimeS: c(0), Counting: Total, Where: Where{"surface"}}}, nil, []told{
+		{"surface only", "cook 0-30", "centre: 0:5 30:40; surface: 0:5 30:70", Met}, {"not even the surface", "cook 0-30", "centre: 0:5 30:70; surface: 0:5 30:60", NotMet}}},
+	{"A18 humidity: FSIS Appendix A, 90 % for half the cook and at least 1 h", []Limit{{Kind: Humidity, Stages: st(model.Cook), HumidityPc: c(90), SharePc: c(50), TimeS: min_(60)}}, nil, []told{}},
+	{"A19 either or: 7 CFR 58.635, 155 °F for 30 min or 175 °F for 25 s", []Limit{
+		{Name: "a", Kind: Hold, Stages: st(model.Cook), FromC: f(155), TimeS: min_(30), Counting: Continuous, Group: "g"},
+		{Name: "b", Kind: Hold, Stages: st(model.Cook), FromC: f(175), TimeS: c(25), Counting: Continuous, Group: "g"}}, []Group{{Name: "g", AnyOf: true}}, []told{
+		{"the first", "cook 0-90", "0:5 30:69 61:69 90:20", Met}, {"the second", "cook 0-90", "0:79 0.2:80 0.7:80 1:60 90:20", Met}, {"neither", "cook 0-90", "0:5 30:69 50:69 90:20", NotMet}}},
+	{"A19 nested: California 3 CCR 910.15, (1) and (2A or 2B)", []Limit{
+		{Name: "1", Kind: Band, FromC: f(40), ToC: f(120), TimeS: min_(1200), Counting: Total, Group: "rule"},
+		{Name: "2A", Kind: Falling, Stages: st(model.Cool), AllowanceK: c(0.2), Group: "two"},
+		{Name: "2B", Kind: CoolWithin, FromC: f(120), ToC: f(55), TimeS: min_(360), Clock: crossing, Where: Where{"surface"}, Group: "two"}},
+		[]Group{{Name: "rule"}, {Name: "two", AnyOf: true, Within: "rule"}}, []told{
+			{"rises, but the surface is quick", "cool 0-1500", "centre: 0:60 100:49 500:13 600:14 1000:4.4 1500:3; surface: 0:60 100:48.9 200:10 1500:3", Met},
+			{"rises and is slow", "cool 0-1500", "centre: 0:60 100:49 500:13 600:14 1000:4.4 1500:3; surface: 0:60 100:49 500:13 600:14 1000:4.4 1500:3", NotMet},
+			{"too long in the band", "cool 0-1500", "centre: 0:60 100:48.9 1400:4.4 1500:3; surface: 0:60 100:48.9 200:10 1500:3", NotMet}}},
+	{"A19 another combination with documents: FSANZ 3.2.2 cl. 7(3)", []Limit{
+		{Name: "a", Kind: CoolWithin, FromC: c(60), ToC: c(21), TimeS: min_(120), Clock: crossing, Group: "g"}, {Name: "doc", Kind: Stated, Answer: "yes: study of 2024", Group: "g"}}, []Group{{Name: "g", AnyOf: true}}, []told{
+		{"slow, but documented", "cook 0-60, cool 60-400", "0:5 60:80 80:60 300:21 400:3", Met}}},
+	{"A20 falling only, with room for the noise of a probe", []Limit{{Kind: Falling, Stages: st(model.Cool), AllowanceK: c(0.5)}}, nil, []told{
+		{"0.5 K of noise", "cool 0-100", "0:60 20:40 25:40.5 100:5", Met}, {"a rise of 0.6 K", "cool 0-100", "0:60 20:40 25:40.6 100:5", NotMet},
+		{"a rise by small steps", "cool 0-100", "0:60 20:40 25:40.3 26:40.1 40:40.8 100:5", NotMet}}},
+	{"A21 freezing in two phases: FDA Food Code 3-402.11, -31 °F then -4 °F for 24 h", []Limit{{Kind: FreezeHold, FromC: f(-31), TimeS: c(0), ToC: f(-4), SecondS: min_(1440)}}, nil, []told{
+		{"24 h after it", "freeze 0-100, store 100-2000", "0:5 100:-35 110:-21 1600:-21 2000:-21", Met}, {"never that cold", "freeze 0-100, store 100-2000", "0:5 100:-34.9 110:-21 2000:-21", NotMet},
+		{"only 20 h", "freeze 0-100, store 100-2000", "0:5 100:-35.1 110:-21 1300:-21 1400:-18 2000:-18", NotMet}}},
+	{"A22 check at one instant: New York City 81.10, not above 70 °F at 4 h", []Limit{{Kind: ByTheEnd, ToC: f(70), TimeS: min_(240), Clock: after(model.Store)}}, nil, []told{
+		{"20 °C at 4 h", "store 0-60, hold cold 60-420", "0:4 60:4 300:20 420:25", Met}, {"22 °C at 4 h", "store 0-60, hold cold 60-420", "0:4 60:4 300:22 420:22", NotMet}, {"ends before 4 h", "store 0-60, hold cold 60-200", "0:4 60:4 200:15", CannotTell}}},
+	{"A22 deadline: Codex 39, 75 °C within one hour of leaving the store", []Limit{{Kind: HeatWithin, ToC: c(75), TimeS: min_(60), Clock: after(model.Store)}}, nil, []told{
+		{"55 min", "store 0-60, reheat 60-150", "0:4 60:4 115:75 150:80", Met}, {"65 min", "store 0-60, reheat 60-150", "0:4 60:4 125:75 150:80", NotMet}}},
+	{"A22 deadline with a hold: South Dakota 44:02:07:33, 165 °F for 15 s within one hour", []Limit{{Kind: HeatWithin, ToC: f(165), TimeS: min_(60), SecondS: c(15), Clock: fromStart(model.Reheat)}}, nil, []told{
+		{"reached and kept", "reheat 0-90", "0:4 55:73.9 56:74 90:80", Met}, {"reached at 59.9 min", "reheat 0-90", "0:4 59.9:73.88888888888889 90:80", NotMet}}},
+	{"A23 rest: FDA Food Code 3-401.12, stand 2 min; FSIS 145 °F and 3 min", []Limit{
+		{Name: "stand", Kind: Duration, Stages: st(model.Rest), TimeS: min_(2), CompareTime: AtLeast}, {Name: "rise", Kind: Hold, Stages: st(model.Cook, model.Rest), FromC: f(145), TimeS: min_(3), Counting: Continuous}}, nil, []told{
+		{"rise after the oven counts", "cook 0-30, rest 30-40", "0:5 29:62 30:62.8 34:63 40:60", Met}, {"rest of 1 min", "cook 0-30, rest 30-31", "0:5 26:62.8 30:66 31:66", NotMet}}},
+	{"A24 gate on composition: California 3 CCR 910.15(b)(3), nitrite", []Limit{{Kind: Stated, Answer: "Yes, 120 ppm nitrite with 3.5 % brine"}}, nil, []told{{"answered", "cool 0-10", "0:5 10:5", Met}}},
+	{"A24 answered no", []Limit{{Kind: Stated, Answer: "no"}}, nil, []told{{"answered", "cool 0-10", "0:5 10:5", NotMet}}},
+	{"A25 growth outcome: 9 CFR 318.17, at most 1 log of Clostridium perfringens: never met by the program", []Limit{{Kind: Stated, Answer: "growth model of the laboratory"}}, nil, []told{{"text", "cool 0-10", "0:5 10:5", CannotTell}}},
+	{"A26 advice: Norway, preferably 60 to 10 °C in 2 h", []Limit{{Kind: CoolWithin, FromC: c(60), ToC: c(10), TimeS: min_(120), Clock: crossing, Advice: true}, {Name: "must", Kind: Stated, Answer: "yes"}}, nil, []told{
+		{"slow is no failure", "cook 0-60, cool 60-400", "0:5 60:80 80:60 300:10 400:3", Met}}},
+	{"A27 deviation: any other row, then expert: text", []Limit{{Kind: Stated, Answer: ""}}, nil, []told{{"blank", "cool 0-10", "0:5 10:5", CannotTell}}},
+	{"A28 duty without a number: Regulation 852/2004 Annex II IX 6, as quickly as possible", []Limit{{Kind: Stated, Answer: ""}}, nil, []told{{"blank", "cool 0-10", "0:5 10:5", CannotTell}}},
+	{"A29 calendar: Codex 39, 4 °C at most 5 days", []Limit{{Name: "t", Kind: StayBelow, Stages: st(model.Store), ToC: c(4)}, {Name: "d", Kind: Duration, Stages: st(model.Store), TimeS: min_(7200), CompareTime: AtMost}}, nil, []told{
+		{"5 days", "store 0-7200", "0:4 7200:4", Met}, {"6 days", "store 0-8640", "0:4 8640:4", NotMet}}},
+	{"A30 margin of the instrument: 165 °F needed, 166 °F set", []Limit{{Kind: Hold, Stages: st(model.Cook), FromC: f(166), TimeS: c(0), Counting: Total}}, nil, []told{
+		{"166 °F", "cook 0-60", "0:5 60:74.5", Met}, {"165.5 °F", "cook 0-60", "0:5 60:74.2", NotMet}}},
+}
+
+// TestForms judges every form on both sides: the verdict of the product.
+func TestForms(t *testing.T) {
+	for _, fm := range forms {
+		for _, x := range fm.cases {
+			t.Run(fm.name+"/"+x.name, func(t *testing.T) {
+				limits := append([]Limit(nil), fm.limits...)
+				for i := range limits {
+					limits[i].Applies = Applies{All: true}
+					for _, fault := range limits[i].Faults() {
+						t.Fatalf("%+v", fault)
+					}
+					filled(t, &limits[i])
+				}
+				j := Judge(limits, fm.groups, Subject{Product: "P", History: x.history(t)})
+				if j.Verdict != x.want {
+					t.Errorf("%v, want %v", j.Verdict, x.want)
+					for _, f := range j.Findings {
+						t.Logf("%s %v %s", f.Limit.Name, f.Verdict, f.Why)
+					}
+				}
+			})
+		}
+	}
+}
+
+// filled tells when a limit fills a column that its kind does not use, or leaves one blank that it needs.
+func filled(t *testing.T, l *Limit) {
+	has := map[string]bool{"From": l.FromC != nil, "To": l.ToC != nil, "Time": l.TimeS != nil, "Second time": l.SecondS != nil,
+		"Clock starts": l.Clock != Clock{}, "Counting": l.Counting != NotCounted, "Compare": l.Compare != Usual, "Compare time": l.CompareTime != Usual,
+		"Reference temperature": l.ReferenceC != nil, "z": l.ZK != nil, "z above the reference temperature": l.ZAboveK != nil, "D": l.DS != nil,
+		"Log reductions": l.Logs != nil, "Allowance": l.AllowanceK != nil, "Humidity": l.HumidityPc != nil, "Share of stage": l.SharePc != nil,
+		"Table": l.Table != nil, "Answer": l.Answer != "", "Stage": len(l.Stages) > 0, "Where": l.Where.Name != ""}
+	for column, is := range has {
+		if is && !l.Kind.Uses(column) {
+			t.Errorf("%s does not use %s", l.Kind.Name, column)
+		}
+	}
+	for _, either := range l.Kind.Needs {
+		any := false
+		for _, column := range either {
+			any = any || has[column]
+		}
+		if !any {
+			t.Errorf("%s needs one of %v", l.Kind.Name, either)
+		}
+	}
+}
