@@ -74,6 +74,7 @@ var textWords = map[string]string{
 	"hottest":       "hottest at the end %s (%s)",
 	"mean":          "mean at the end %s",
 	"point":         "%s at the end %s",
+	"deciding":      "where the tightest limit is decided (%s) at the end %s",
 	"moves":         "How the slowest place moves",
 	"lever":         "The biggest lever",
 	"profile":       "Profile through the product",
@@ -264,12 +265,19 @@ func (t *Text) course(x *sheet) {
 				out = append(out, fmt.Sprintf(textWords["step medium"], h.stated(c)))
 			}
 		}
-		t.item(strings.Join(append(out, t.atEnd(p, sp.EndS)...), "; "))
+		out = append(out, t.atEnd(p, sp.EndS)...)
+		if w := x.decides.history; w.At != nil {
+			r := up
+			if sp.Step != nil && sp.Step.Stage != nil && sp.Step.Stage.Heats {
+				r = down
+			}
+			out = append(out, fmt.Sprintf(textWords["deciding"], x.decides.placeName, h.temperature(w.At(x.decides.place, sp.EndS), r)))
+		}
+		t.item(strings.Join(out, "; "))
 	}
 	if p.Product.Shape == nil || len(p.History.Spans) == 0 || p.History.Spans[0].Step == nil {
 		return
 	}
-	t.plain(x.slowestSentence())
 	if len(p.Samples.ColdestAt) > 0 && !p.History.Recorded {
 		t.heading(3, "moves")
 		t.plain(x.moves())

@@ -106,6 +106,26 @@ func TestDuration(t *testing.T) {
 	}
 }
 
+func TestCitation(t *testing.T) {
+	for _, c := range []struct {
+		name  string
+		limit rules.Limit
+		want  string
+	}{
+		{"whole", rules.Limit{Code: "Invented code", Clause: "2-10", Edition: "1.10", IssuedBy: "an authority", ConfirmedBy: "A. Person", ConfirmedOn: "2026-01-05"},
+			"Invented code, clause 2-10, edition 1.10, issued by an authority; confirmed by A. Person on 2026-01-05"},
+		{"no code", rules.Limit{Clause: "2-10"}, "no code named, clause 2-10; not confirmed"},
+		{"nothing", rules.Limit{}, "no code named; not confirmed"},
+		{"a day without a name", rules.Limit{Code: "Invented code", ConfirmedOn: "2026-01-05"}, "Invented code; confirmed on 2026-01-05"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			if got := citation(&c.limit); got != c.want {
+				t.Errorf("%q, wanted %q", got, c.want)
+			}
+		})
+	}
+}
+
 func TestTemperature(t *testing.T) {
 	inC, inF := &Head{}, &Head{Fahrenheit: true}
 	for _, c := range []struct{ name, got, want string }{
