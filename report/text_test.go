@@ -17,9 +17,29 @@ import (
 )
 
 func TestTextGolden(t *testing.T) {
-	got := write(t, NewText, trayHead(), trayProduct(t, "Beef stew"))
-	golden(t, "tray.txt", got)
-	if blank := regexp.MustCompile(`\[[a-z -]+\]|%!`).Find(got); blank != nil {
+	p := trayProduct(t, "Beef stew")
+	got := string(write(t, NewText, trayHead(), p))
+	before, rest, found := strings.Cut(got, "\nCautions for this run\n")
+	cautions, after, found2 := strings.Cut(rest, "\nInput: ")
+	after, closing, found3 := strings.Cut(after, "\nWhen to look at the process again\n")
+	if !found || !found2 || !found3 {
+		t.Fatalf("a section is missing in\n%s", got)
+	}
+	golden(t, "tray.txt", []byte(before+"\nInput: "+after)) // the other texts are those of the PDF, and held there
+	for _, c := range Cautions(trayHead(), p) {
+		if !strings.Contains(cautions, "\n- "+c.Text+"\n") {
+			t.Errorf("the caution %q is missing in\n%s", c.Text, cautions)
+		}
+	}
+	if n := strings.Count(closing, "\n- "); n != len(changeKeys) || !strings.HasSuffix(closing, "\nEnd of the report.\n") {
+		t.Errorf("%d reasons to look again, wanted %d, in\n%s", n, len(changeKeys), closing)
+	}
+	for _, k := range glossaryKeys {
+		if !strings.Contains(closing, "\n"+say("word "+k)+": ") {
+			t.Errorf("%q is not explained", say("word "+k))
+		}
+	}
+	if blank := regexp.MustCompile(`\[[a-z -]+\]|%!`).FindString(got); blank != "" {
 		t.Errorf("a text is missing: %s", blank)
 	}
 }
