@@ -225,17 +225,36 @@ func freezing(h *Head, p *Product) ([]any, bool) {
 	return []any{h.temperature(cold, down), h.stated(at)}, cold <= at
 }
 
-// sparse: a record whose readings are more than five minutes apart somewhere.
+// sparse: a record whose readings are more than five minutes apart somewhere. The times of a scan hold the changes of step as
+// well, which may cut a gap in two, so it is looked at without them too.
 func sparse(h *Head, p *Product) ([]any, bool) {
 	if p.History == nil || !p.History.Recorded || p.History.Scan() == nil {
 		return nil, false
 	}
-	t := p.History.Scan().TimesS
+	bounds := map[float64]bool{}
+	for _, sp := range p.History.Spans {
+		bounds[sp.StartS], bounds[sp.EndS] = true, true
+	}
+	var read []float64
+	for _, t := range p.History.Scan().TimesS {
+		if !bounds[t] {
+			read = append(read, t)
+		}
+	}
+	gap := widestGap(p.History.Scan().TimesS)
+	if cut := widestGap(read); cut > 600 { // a reading at a change of step is taken out as well: two intervals of five minutes
+		gap = max(gap, cut)
+	}
+	return []any{duration(gap, up)}, gap > 300
+}
+
+// widestGap is the longest way from one time to the next, s.
+func widestGap(t []float64) float64 {
 	gap := 0.0
 	for i := 1; i < len(t); i++ {
 		gap = max(gap, t[i]-t[i-1])
 	}
-	return []any{duration(gap, up)}, gap > 300
+	return gap
 }
 
 // errorWords writes an error estimate, rounded up.

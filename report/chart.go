@@ -4,6 +4,7 @@ import (
 	"image/color"
 	"math"
 	"sort"
+	"strings"
 
 	"gonum.org/v1/plot"
 	"gonum.org/v1/plot/text"
@@ -46,7 +47,7 @@ type line struct {
 
 // level is a limit's temperature: a line from one time to another with its words at the line.
 type level struct {
-	words    string
+	words    []string // temperature, name: in one line if there is room, else in two
 	y        float64
 	from, to float64
 }
@@ -129,6 +130,9 @@ func (f *chart) Plot(c draw.Canvas, p *plot.Plot) {
 	for _, s := range f.spots {
 		taken.add(vg.Rectangle{Min: vg.Point{X: x(s.x) - 4, Y: y(s.y) - 4}, Max: vg.Point{X: x(s.x) + 4, Y: y(s.y) + 4}})
 	}
+	for _, l := range f.levels { // no words on any limit's line, their own among them
+		taken.add(vg.Rectangle{Min: vg.Point{X: x(l.from), Y: y(l.y) - 0.7}, Max: vg.Point{X: x(l.to), Y: y(l.y) + 0.7}})
+	}
 	var notes []note
 	for i := range f.levels {
 		notes = append(notes, f.placeLevel(c, x, y, &f.levels[i], taken))
@@ -154,14 +158,17 @@ func (f *chart) Plot(c draw.Canvas, p *plot.Plot) {
 		if n.from != nil {
 			c.StrokeLine2(draw.LineStyle{Color: black, Width: 0.7}, n.from.X, n.from.Y, n.to.X, n.to.Y)
 		}
-		c.FillText(f.style(false), vg.Point{X: n.box.Min.X + 1.5, Y: n.box.Min.Y + vg.Length(f.size)*0.23}, n.words)
+		for k, s := range n.words {
+			at := n.box.Max.Y - vg.Length(f.size*(1.2*float64(k)+0.97))
+			c.FillText(f.style(false), vg.Point{X: n.box.Min.X + 1.5, Y: at}, s)
+		}
 	}
 	f.plotEnds(c, y)
 }
 
 // note is a label with its place, and a line to what it is about unless it stands beside it.
 type note struct {
-	words    string
+	words    []string
 	box      vg.Rectangle
 	from, to *vg.Point
 }
@@ -244,33 +251,47 @@ func (f *chart) plotLine(c draw.Canvas, x, y func(float64) vg.Length, i int, run
 	}
 }
 
-// placeLevel finds room for the words of a limit at its line.
+// placeLevel finds room for the words of a limit at its line, in one line or else in two.
 func (f *chart) placeLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level, taken *labels) note {
-	w, h := f.style(false).Width(l.words)+3, vg.Length(f.size*1.2)
-	left, right := x(l.from)+2, max(x(l.to)-w-2, x(l.from)+2)
-	var at []vg.Point
-	for k := 0; k <= 10; k++ { // along the line, above first
-		px := min(max(left+(right-left)*vg.Length(k)/10, c.Min.X+2), c.Max.X-w)
-		at = append(at, vg.Point{X: px, Y: y(l.y) + 1}, vg.Point{X: px, Y: y(l.y) - h - 1})
+	var found note
+	least := math.Inf(1)
+	for _, lines := range [][]string{{strings.Join(l.words, " – ")}, l.words} {
+		w := vg.Length(0)
+		for _, s := range lines {
+			w = max(w, f.style(false).Width(s)+3)
+		}
+		h := vg.Length(f.size * 1.2 * float64(len(lines)))
+		left, right := x(l.from)+2, max(x(l.to)-w-2, x(l.from)+2)
+		var at []vg.Point
+		for k := 0; k <= 12; k++ { // along the line, above first
+			px := min(max(left+(right-left)*vg.Length(k)/12, c.Min.X+2), c.Max.X-w)
+			at = append(at, vg.Point{X: px, Y: y(l.y) + 1}, vg.Point{X: px, Y: y(l.y) - h - 1})
+		}
+		if end := x(l.to) + 3; end+w < c.Max.X { // or behind its end
+			at = append(at, vg.Point{X: end, Y: y(l.y) - h/2})
+		}
+		if box, cost := taken.best(at, w, h, c.Rectangle); cost < least {
+			found, least = note{words: lines, box: box}, cost
+		}
 	}
-	if end := x(l.to) + 3; end+w < c.Max.X { // or behind its end
-		at = append(at, vg.Point{X: end, Y: y(l.y) - h/2})
-	}
-	return note{words: l.words, box: taken.best(at, w, h, c.Rectangle)}
+	taken.label(found.box)
+	return found
 }
 
 // placeSpot finds room for a label near a point; farther off it gets a line.
 func (f *chart) placeSpot(c draw.Canvas, s string, p vg.Point, taken *labels) note {
 	w, h := f.style(false).Width(s)+3, vg.Length(f.size*1.2)
 	var at []vg.Point
-	for _, far := range []vg.Length{6, 12, 20, 30, 42, 56} {
+	for _, far := range []vg.Length{6, 12, 20, 30, 42, 56, 75} {
 		for _, side := range []vg.Length{0, -w, -w / 2} {
 			dx := map[bool]vg.Length{true: far / 2, false: -far / 2}[side == 0]
-			at = append(at, vg.Point{X: p.X + side + dx, Y: p.Y + far}, vg.Point{X: p.X + side + dx, Y: p.Y - far - h})
+			at = append(at, vg.Point{X: p.X + side + dx, Y: p.Y + far}, vg.Point{X: p.X + side + dx, Y: p.Y - far - h},
+				vg.Point{X: p.X + side + 3*dx, Y: p.Y + far/3}, vg.Point{X: p.X + side + 3*dx, Y: p.Y - far/3 - h})
 		}
 	}
-	b := taken.best(at, w, h, c.Rectangle)
-	n := note{words: s, box: b}
+	b, _ := taken.best(at, w, h, c.Rectangle)
+	taken.label(b)
+	n := note{words: []string{s}, box: b}
 	to := vg.Point{X: min(max(p.X, b.Min.X), b.Max.X), Y: min(max(p.Y, b.Min.Y), b.Max.Y)}
 	if d := vg.Length(math.Hypot(float64(to.X-p.X), float64(to.Y-p.Y))); d > 10 {
 		from := vg.Point{X: p.X + (to.X-p.X)*4/d, Y: p.Y + (to.Y-p.Y)*4/d}
@@ -285,7 +306,7 @@ type labels struct{ boxes []vg.Rectangle }
 func (t *labels) add(r vg.Rectangle) { t.boxes = append(t.boxes, r) }
 
 // best takes the first of the places that covers nothing, or the one that covers least, within bounds.
-func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) vg.Rectangle {
+func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) (vg.Rectangle, float64) {
 	least, found := math.Inf(1), at[0]
 	for _, p := range at {
 		r := vg.Rectangle{Min: p, Max: vg.Point{X: p.X + w, Y: p.Y + h}}
@@ -306,11 +327,14 @@ func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) vg.Rectang
 			break
 		}
 	}
-	r := vg.Rectangle{Min: found, Max: vg.Point{X: found.X + w, Y: found.Y + h}}
-	for range 3 { // words upon words are worse than words upon a line
+	return vg.Rectangle{Min: found, Max: vg.Point{X: found.X + w, Y: found.Y + h}}, least
+}
+
+// label takes the room of words: words upon words are worse than words upon a line.
+func (t *labels) label(r vg.Rectangle) {
+	for range 3 {
 		t.add(r)
 	}
-	return r
 }
 
 // plotEnds names the curves at their right ends, moved apart where they would touch.
@@ -532,13 +556,9 @@ func (h *Head) levels(p *Product, hist *model.History, unitS float64) []level {
 				return
 			}
 		}
-		n := level{words: say("level", h.typed(l, heading, c), l.Name), y: h.shown(*c), from: from / unitS, to: to / unitS}
+		n := level{words: []string{h.briefly(l, heading, c), l.Name}, y: h.shown(*c), from: from / unitS, to: to / unitS}
 		for i := range out {
 			if out[i].y == n.y {
-				if out[i].from == n.from && out[i].to == n.to || len(out[i].words) > 60 {
-					out[i].from, out[i].to = min(out[i].from, n.from), max(out[i].to, n.to)
-					return
-				}
 				out[i].from, out[i].to = min(out[i].from, n.from), max(out[i].to, n.to)
 				return
 			}
@@ -560,6 +580,15 @@ func (h *Head) levels(p *Product, hist *model.History, unitS float64) []level {
 		}
 	}
 	return out
+}
+
+// briefly writes a limit's temperature for a chart: as typed, and in the unit of the chart if that is another.
+func (h *Head) briefly(l *rules.Limit, heading string, c *float64) string {
+	s := h.typed(l, heading, c)
+	if first, _, found := strings.Cut(s, " ("); found && strings.HasSuffix(first, h.degree()) {
+		return first
+	}
+	return s
 }
 
 // spots marks where the deciding limit's clock starts and ends.

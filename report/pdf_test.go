@@ -2,11 +2,10 @@ package report
 
 import (
 	"bytes"
-	"math"
 	"os"
 	"os/exec"
+	"path/filepath"
 	"strings"
-	"sync"
 	"testing"
 	"time"
 
@@ -98,12 +97,17 @@ func productPDF(t testing.TB, h *Head, p *Product) []byte {
 	if err := WriteProductPDF(&b, h, p); err != nil {
 		t.Fatal(err)
 	}
-	if dir := os.Getenv("SLOWPOINT_PDF"); dir != "" { // to look at what the tests made
-		if err := os.WriteFile(dir+"/"+strings.ReplaceAll(t.Name(), "/", "_")+".pdf", b.Bytes(), 0o644); err != nil {
+	keep(t, b.Bytes())
+	return b.Bytes()
+}
+
+// keep writes a document into the folder SLOWPOINT_PDF, so that one can look at what the tests made.
+func keep(t testing.TB, pdf []byte) {
+	if dir := os.Getenv("SLOWPOINT_PDF"); dir != "" {
+		if err := os.WriteFile(filepath.Join(dir, strings.ReplaceAll(t.Name(), "/", "_")+".pdf"), pdf, 0o644); err != nil {
 			t.Fatal(err)
 		}
 	}
-	return b.Bytes()
 }
 
 // pdfText gives the text of a PDF, with runs of blanks made one.
@@ -170,5 +174,13 @@ func TestProductPDF(t *testing.T) {
 	}
 }
 
-var _ = math.Pi
-var _ sync.Mutex
+func BenchmarkReport(b *testing.B) {
+	h, p := roastHead(), roast(b, model.Slab, rules.NotMet)
+	b.ReportAllocs()
+	for b.Loop() {
+		var out bytes.Buffer
+		if err := WriteProductPDF(&out, h, p); err != nil {
+			b.Fatal(err)
+		}
+	}
+}

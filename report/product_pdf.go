@@ -529,12 +529,12 @@ func (x *sheet) predicted() {
 	if x.p.History == nil || x.p.History.Recorded {
 		return
 	}
-	d.heading(say("predicted title"), 0, 118)
+	d.heading(say("predicted title"), 0, 130)
 	d.text(say("predicted note"))
-	d.heading(say("course title"), 1, 95)
-	h.history(x.p, x.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 88))
-	d.y += 89
-	d.text(x.slowestSentence() + " " + x.errorSentence())
+	d.heading(say("course title"), 1, 107)
+	h.history(x.p, x.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 100))
+	d.y += 101
+	d.text(x.slowestSentence() + " " + x.levelsSentence() + x.errorSentence())
 	d.heading(say("slowest title"), 1, 30)
 	x.slowest()
 	if f, times := h.profile(x.p, x.decides, small, 84); f != nil {
@@ -546,6 +546,24 @@ func (x *sheet) predicted() {
 	d.heading(say("sketch title"), 1, 58)
 	d.sketch(&x.p.Product, x.decides.place, x.decides.placeName, 48)
 	d.text(say("sketch sentence", x.p.Product.Shape.Name, x.sizes(), x.decides.placeName))
+}
+
+// levelsSentence names the limit lines of the chart in both units.
+func (x *sheet) levelsSentence() string {
+	var s []string
+	seen := map[*rules.Limit]bool{}
+	for _, f := range x.order {
+		l := f.Limit
+		if l == nil || seen[l] || f.Verdict == rules.NotApplicable || l.FromC == nil && l.ToC == nil {
+			continue
+		}
+		seen[l] = true
+		s = append(s, say("level", joined(x.head.typed(l, "From", l.FromC), x.head.typed(l, "To", l.ToC)), l.Name))
+	}
+	if len(s) == 0 {
+		return ""
+	}
+	return say("levels sentence", strings.Join(s, ", "))
 }
 
 func (x *sheet) errorSentence() string {

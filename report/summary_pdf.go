@@ -53,17 +53,20 @@ func (d *doc) summary(rows []Row) {
 		if margin == "" {
 			margin = r.Why
 		}
-		notes := ""
-		if r.Problems > 0 {
-			notes = plain(float64(r.Problems), 0, nearest)
+		name := r.Product
+		if r.File != "" {
+			name += "\n" + r.File
 		}
-		cells = append(cells, []string{r.Product, r.Process, verdictWord(overall(r.Verdict)), margin, r.Deciding, notes, r.File})
+		if r.Problems > 0 {
+			name += "\n" + say("row notes", r.Problems)
+		}
+		cells = append(cells, []string{name, r.Process, verdictWord(overall(r.Verdict)), margin, r.Deciding})
 	}
 	if len(cells) == 0 {
 		d.text(say("summary none"))
 	} else {
-		d.table([]col{{title: say("col product"), wide: 36, bold: true}, {title: say("col process"), wide: 25}, {title: say("col verdict"), wide: 24, bold: true},
-			{title: say("col margin"), wide: 34}, {title: say("col deciding"), wide: 30}, {title: say("col notes"), wide: 11}, {title: say("col file"), wide: 20}}, cells, small)
+		d.table([]col{{title: say("col product"), wide: 50}, {title: say("col process"), wide: 31}, {title: say("col verdict"), wide: 29, bold: true},
+			{title: say("col margin"), wide: 41}, {title: say("col deciding"), wide: 29}}, cells, small)
 	}
 	d.plan()
 	d.noted()
