@@ -53,8 +53,14 @@ func (p path) value(t float64) float64 {
 // cross finds when the path passes a level between knots i and i+1, which lie on either side of it.
 func (p path) cross(i int, level float64) float64 {
 	a, b, fa, fb := p.t[i], p.t[i+1], p.c[i]-level, p.c[i+1]-level
-	if fa == fb || b == a {
+	switch {
+	case fa == fb || b == a:
 		return a
+	case (fa > 0) == (fb > 0): // one end lies on the level but for the arithmetic
+		if math.Abs(fa) < math.Abs(fb) {
+			return a
+		}
+		return b
 	}
 	x := a + (b-a)*fa/(fa-fb)
 	if p.at == nil || fa == 0 || fb == 0 {
@@ -136,16 +142,17 @@ func (p path) polish(i int, sign float64) (at, c float64) {
 	return at, c
 }
 
-// region is a range of temperatures, °C, ends included.
-type region struct{ lo, hi float64 }
+// region is a range of temperatures, °C; a temperature beyond an end by less than slack (K) is still in it, and with a negative
+// slack one short of an end by less is not.
+type region struct{ lo, hi, slack float64 }
 
 // atOrAbove, above, atOrBelow, below and between are the regions of the operators; equality is taken to sameK.
-func atOrAbove(c float64) region      { return region{c - sameK, math.Inf(1)} }
-func above(c float64) region          { return region{c + sameK, math.Inf(1)} }
-func atOrBelow(c float64) region      { return region{math.Inf(-1), c + sameK} }
-func below(c float64) region          { return region{math.Inf(-1), c - sameK} }
-func between(lo, hi float64) region   { return region{lo + sameK, hi - sameK} }
-func (r region) holds(c float64) bool { return c >= r.lo && c <= r.hi }
+func atOrAbove(c float64) region      { return region{c, math.Inf(1), sameK} }
+func above(c float64) region          { return region{c, math.Inf(1), -sameK} }
+func atOrBelow(c float64) region      { return region{math.Inf(-1), c, sameK} }
+func below(c float64) region          { return region{math.Inf(-1), c, -sameK} }
+func between(lo, hi float64) region   { return region{lo, hi, -sameK} }
+func (r region) holds(c float64) bool { return c >= r.lo-r.slack && c <= r.hi+r.slack }
 
 // spent is how long a course was in a region.
 type spent struct {
@@ -187,7 +194,7 @@ func (p path) stay(ivs []interval, r region) spent {
 				on, start = true, q.cross(i, r.edge(A))
 			default:
 				end(q.t[i])
-				if A < r.lo && B > r.hi || A > r.hi && B < r.lo {
+				if A <= r.lo && B >= r.hi || A >= r.hi && B <= r.lo {
 					on, start = true, q.cross(i, r.edge(A))
 					end(q.cross(i, r.edge(B)))
 				}
@@ -202,7 +209,7 @@ func (p path) stay(ivs []interval, r region) spent {
 
 // edge is the end of the region that a temperature outside it lies beyond.
 func (r region) edge(c float64) float64 {
-	if c < r.lo {
+	if c <= r.lo-r.slack {
 		return r.lo
 	}
 	return r.hi

@@ -26,7 +26,7 @@ func judgeOutside(v *view) Finding {
 	q.measure = func(p path, t tilt) outcome {
 		r := between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK+t.ownK)
 		if strict {
-			r = region{r.lo - 2*sameK, r.hi + 2*sameK}
+			r.slack = sameK
 		}
 		sp := p.stay(v.stages, r)
 		o := none(NotMet, "outside")

@@ -53,10 +53,14 @@ func (v *view) excursion(level, sign float64) question {
 	}
 	q := question{unit: "min", need: *l.TimeS / 60, warm: sign > 0}
 	q.measure = func(p path, t tilt) outcome {
-		// beyond the limit is whatever its operator does not allow
-		out, word := region{-1e9, l.warmSide(level+t.errK+t.ownK).lo - 2*sameK}, "out above"
-		if sign < 0 {
-			out, word = region{l.coldSide(level-t.errK-t.ownK).hi + 2*sameK, 1e9}, "out below"
+		out, word := below(level+t.errK+t.ownK), "out above"
+		switch strict := l.Compare == MoreThan || l.Compare == LessThan; {
+		case sign < 0 && strict:
+			out, word = atOrAbove(level-t.errK-t.ownK), "out below"
+		case sign < 0:
+			out, word = above(level-t.errK-t.ownK), "out below"
+		case strict:
+			out = atOrBelow(level + t.errK + t.ownK)
 		}
 		return v.exposed(p.stay(v.stages, out), c, word, t)
 	}

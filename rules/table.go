@@ -66,7 +66,7 @@ func (v *view) row(p path, t tilt, row *Row, top float64) outcome {
 		return o
 	}
 	var sp spent
-	if top >= r.lo {
+	if r.holds(top) {
 		sp = p.stay(v.stages, r)
 	}
 	held := sp.counted(v.l.Counting)
