@@ -98,13 +98,20 @@ const flatK = 1e-7
 // extremes finds the coldest and hottest place anywhere in the food: among the nodes first, then along the axes between them.
 func (b *body) extremes(s snapshot) (low, high extreme) {
 	s.grid(b.buf)
-	lo, hi := b.order[0], b.order[0]
-	for _, i := range b.order[1:] {
-		if b.buf[i] < b.buf[lo]-flatK {
+	cold, hot := b.buf[0], b.buf[0]
+	for _, c := range b.buf {
+		cold, hot = min(cold, c), max(hot, c)
+	}
+	lo, hi := -1, -1 // the nearest to the centre of those that are as cold and as hot
+	for _, i := range b.order {
+		if lo < 0 && b.buf[i] <= cold+flatK {
 			lo = i
 		}
-		if b.buf[i] > b.buf[hi]+flatK {
+		if hi < 0 && b.buf[i] >= hot-flatK {
 			hi = i
+		}
+		if lo >= 0 && hi >= 0 {
+			break
 		}
 	}
 	return b.polish(s, lo, 1), b.polish(s, hi, -1)
@@ -112,18 +119,27 @@ func (b *body) extremes(s snapshot) (low, high extreme) {
 
 // polish moves from a node to the extreme beside it; sign 1 looks for the coldest, -1 for the hottest.
 func (b *body) polish(s snapshot, node int, sign float64) extreme {
-	e := extreme{b.buf[node], b.node(node)}
-	g := b.index(node)
-	var r, phi, dphi [maxDegrees]float64
 	stride := [3]int{len(b.nodes.x[1]) * len(b.nodes.x[2]), len(b.nodes.x[2]), 1}
+	g := b.index(node)
 	var done [3]bool
 	for a := range g {
 		done[a] = b.settled(node, g[a], a, stride[a], sign)
 	}
 	if done == [3]bool{true, true, true} {
-		return e
+		return extreme{b.buf[node], b.node(node)}
 	}
-	for sweep := 0; sweep < 3; sweep++ {
+	return b.descend(s, node, g, stride, done, sign)
+}
+
+// descend goes along the axes that are not done, in turn, until nothing moves.
+func (b *body) descend(s snapshot, node int, g, stride [3]int, done [3]bool, sign float64) extreme {
+	e := extreme{b.buf[node], b.node(node)}
+	var r, phi, dphi [maxDegrees]float64
+	sweeps := 3
+	if (done[0] || done[1]) && (done[0] || done[2]) && (done[1] || done[2]) {
+		sweeps = 1 // one axis to go along
+	}
+	for sweep := 0; sweep < sweeps; sweep++ {
 		moved := false
 		for a := range g {
 			if sweep == 0 && done[a] || b.kinds[a] == lumped {
@@ -215,7 +231,7 @@ func zeroOfSlope(slope func(float64) float64, lo, mid, hi float64) float64 {
 			x = (lo + hi) / 2
 		}
 		f := slope(x)
-		if math.Abs(f) < 1e-6 {
+		if math.Abs(f) < 1e-4 {
 			return x
 		}
 		if f < 0 {

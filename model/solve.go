@@ -6,7 +6,7 @@ import (
 )
 
 // Goals of the error estimate by number of axes, K: resolution is raised until the estimate is below.
-var goalK = [4]float64{0, 0.004, 0.008, 0.015}
+var goalK = [4]float64{0, 0.0048, 0.0095, 0.019}
 
 // settleS is the time after a change of surroundings from which the error is estimated, s; less for small foods.
 const settleS = 30
@@ -45,7 +45,7 @@ type solver struct {
 	used    int         // axes with extent
 	settle  float64     // s
 	foMin   [3]float64  // Fourier number of settle by axis
-	sharp   bool        // a film so strong that the surface all but jumps
+	sharp   [3]bool     // a film on the axis so strong that the surface all but jumps
 	chain   []*chainStep
 	main    field
 }
@@ -96,9 +96,10 @@ func (s *solver) layOut() {
 	for a := 0; a < s.used; a++ {
 		s.foMin[a] = alpha * s.settle / (s.radii[a] * s.radii[a])
 		for i := range s.steps {
-			for _, e := range exposures(s.product.Shape, &s.steps[i]) {
+			for _, f := range s.faces[a] {
+				e := s.steps[i].on(f)
 				u := e.filmUsed(nil, &filmCase{shape: s.product.Shape, size: s.product.Size, foodC: 50, mediumC: 20, airMS: 1})
-				s.sharp = s.sharp || u.TotalW*s.radii[a]/q.KWmK > sharpBiot
+				s.sharp[a] = s.sharp[a] || u.TotalW*s.radii[a]/q.KWmK > sharpBiot
 			}
 		}
 	}
@@ -120,12 +121,15 @@ func (s *solver) degrees(a, more int) int {
 	if s.kinds[a] == lumped {
 		return 1
 	}
-	// The numbers 2.5, 2.1 and 2.5 were fitted to the reference problems so that the first try is nearly always enough.
-	n := 2.5 + 2.1*math.Pow(s.foMin[a], -0.25)
-	if s.sharp {
-		n += 2.5
+	// The numbers were fitted to the reference problems so that the first try is nearly always enough.
+	n := 2.5 + 2.15*math.Pow(s.foMin[a], -0.25)
+	if s.used == 3 {
+		n -= 1 // its goal is wider
 	}
-	n *= 1 + 0.3*float64(more)
+	if s.sharp[a] {
+		n += 4
+	}
+	n *= 1 + 0.15*float64(more)
 	if s.kinds[a] == planeFull {
 		n *= 2
 	}
@@ -136,7 +140,7 @@ func (s *solver) degrees(a, more int) int {
 func (s *solver) full(more int) bool {
 	for a := 0; a < s.used; a++ {
 		if s.degrees(a, more) < maxDegrees {
-			return more >= 6
+			return more >= 12
 		}
 	}
 	return true

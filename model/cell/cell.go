@@ -135,3 +135,34 @@ func (es Errors) Error() string {
 	}
 	return s
 }
+
+// Fold joins the same problem in cells below each other into one, with "… and N more cells down to C19" in its message.
+// The order is kept.
+func (es Errors) Fold() Errors {
+	type key struct {
+		sheet             string
+		col               int
+		level             Level
+		field, typed, msg string
+	}
+	var out Errors
+	first := map[key]int{}
+	count := map[int]int{}
+	last := map[int]Ref{}
+	for _, e := range es {
+		k := key{e.At.Sheet, e.At.Col, e.Level, e.Field, e.Typed, e.Msg}
+		i, seen := first[k]
+		if !seen || e.At.Row == 0 || e.At.Col == 0 || e.At.Row != last[i].Row+1 {
+			first[k] = len(out)
+			last[len(out)] = e.At
+			out = append(out, e)
+			continue
+		}
+		count[i]++
+		last[i] = e.At
+	}
+	for i, n := range count {
+		out[i].Msg += fmt.Sprintf(" (the same in %d more, down to %s)", n, last[i])
+	}
+	return out
+}
