@@ -1,0 +1,42 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"io"
+	"os"
+
+	"github.com/spf13/cobra"
+
+	"slowpoint/cmd/slowpoint/workbook"
+)
+
+func blankCommand() *cobra.Command {
+	var demo bool
+	cmd := &cobra.Command{
+		Use: "blank FILE.xlsx", Short: "Write an empty plan workbook with headings, units, notes and lists to choose from",
+		Example: "  slowpoint blank my-plan.xlsx\n  slowpoint blank --demo demo.xlsx", Args: cobra.ExactArgs(1),
+		RunE: func(cmd *cobra.Command, args []string) error {
+			if err := newFile(args[0]); err != nil {
+				return err
+			}
+			if err := writeWhole(args[0], func(w io.Writer) error { return workbook.WriteBlank(w, demo) }); err != nil {
+				return &failure{exitFault, err}
+			}
+			fmt.Fprintf(cmd.OutOrStdout(), "%s is ready: fill it in, then run slowpoint check %s\n", args[0], args[0])
+			return nil
+		},
+	}
+	cmd.Flags().BoolVar(&demo, "demo", false, "fill it with the demo plan")
+	return cmd
+}
+
+// newFile refuses a file that exists.
+func newFile(path string) error {
+	if _, err := os.Lstat(path); err == nil {
+		return &failure{exitInput, fmt.Errorf("%s exists already and is left as it is: choose another name", path)}
+	} else if !errors.Is(err, os.ErrNotExist) {
+		return &failure{exitInput, err}
+	}
+	return nil
+}

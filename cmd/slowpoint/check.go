@@ -1,0 +1,364 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+	"runtime"
+	"slices"
+	"strings"
+	"time"
+
+	"github.com/schollz/progressbar/v3"
+	"github.com/spf13/cobra"
+	"golang.org/x/term"
+
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/report"
+	"slowpoint/rules"
+)
+
+// checkOptions are the flags of check.
+type checkOptions struct {
+	out, every, date, paper string
+	only                    []string
+	onePDF, noPDF           bool
+}
+
+func checkCommand() *cobra.Command {
+	var o checkOptions
+	cmd := &cobra.Command{
+		Use: "check [PLAN]", Short: "Calculate a plan, judge its limits and write the report; without PLAN, the built-in demo",
+		Example: "  slowpoint check\n  slowpoint check plan.xlsx --out results", Args: cobra.MaximumNArgs(1),
+		RunE: func(cmd *cobra.Command, args []string) error { return check(cmd, args, &o) },
+	}
+	f := cmd.Flags()
+	f.StringVar(&o.out, "out", "", "folder of the results (default PLAN-results beside the plan)")
+	f.StringVar(&o.every, "every", "60s", "interval of the courses in the results; it changes no verdict")
+	f.StringSliceVar(&o.only, "only", nil, "calculate these products only (may be repeated)")
+	f.StringVar(&o.date, "date", "", "date on the report, as 2026-01-31 (default today)")
+	f.StringVar(&o.paper, "paper", "", "A4 or Letter (default: the plan's own, else A4)")
+	f.BoolVar(&o.onePDF, "one-pdf", false, "one PDF with everything instead of one a product")
+	f.BoolVar(&o.noPDF, "no-pdf", false, "write no PDF")
+	return cmd
+}
+
+// check is the main job.
+func check(cmd *cobra.Command, args []string, o *checkOptions) error {
+	plan, folder, err := readPlan(args, o)
+	if err != nil {
+		return err
+	}
+	head, err := headOf(plan, o)
+	if err != nil {
+		return err
+	}
+	if err := keepOnly(plan, o.only); err != nil {
+		return err
+	}
+	if err := makeFolder(folder); err != nil {
+		return &failure{exitFault, err}
+	}
+	for _, k := range known() {
+		head.Known = append(head.Known, k.KnownAnswer)
+	}
+	head.Products = len(plan.Products)
+	r := &runner{ctx: cmd.Context(), plan: plan, head: head, folder: folder, options: o, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
+	if err := r.all(); err != nil {
+		if errors.Is(err, context.Canceled) {
+			return &failure{exitFault, fmt.Errorf("stopped: the product reports that are finished are whole in %s; there is no summary", folder)}
+		}
+		return &failure{exitFault, err}
+	}
+	tellProblems(cmd.ErrOrStderr(), head.Problems)
+	r.tell(cmd.OutOrStdout())
+	return r.exit()
+}
+
+// readPlan reads the plan or the demo and says where its results go.
+func readPlan(args []string, o *checkOptions) (plan *workbook.Plan, folder string, err error) {
+	if len(args) == 0 {
+		plan, err = workbook.ReadDemo()
+		folder = "slowpoint-demo-results"
+	} else {
+		plan, err = workbook.Read(args[0])
+		path := filepath.Clean(args[0])
+		folder = strings.TrimSuffix(path, filepath.Ext(path)) + "-results"
+	}
+	if err != nil {
+		return nil, "", &failure{exitInput, err}
+	}
+	if o.out != "" {
+		folder = o.out
+	}
+	return plan, folder, nil
+}
+
+// headOf makes what all documents share.
+func headOf(plan *workbook.Plan, o *checkOptions) (*report.Head, error) {
+	h := &report.Head{Version: version, Plan: plan.Name, SHA256: plan.SHA256, Paper: plan.Paper, Fahrenheit: plan.Fahrenheit, Problems: plan.Problems}
+	for _, it := range plan.Items {
+		h.Items = append(h.Items, report.Item(it))
+	}
+	for _, n := range plan.NotCalculated {
+		h.NotCalculated = append(h.NotCalculated, report.NotCalculated(n))
+	}
+	switch strings.ToLower(o.paper) {
+	case "a4":
+		h.Paper = "A4"
+	case "letter":
+		h.Paper = "Letter"
+	case "":
+	default:
+		return nil, &failure{exitInput, fmt.Errorf("--paper %q: expected A4 or Letter", o.paper)}
+	}
+	if h.Paper == "" {
+		h.Paper = "A4"
+	}
+	every, err := time.ParseDuration(o.every)
+	if err != nil || every < time.Second {
+		return nil, &failure{exitInput, fmt.Errorf("--every %q: expected a duration of at least 1s, such as 60s or 5m", o.every)}
+	}
+	h.EveryS = every.Seconds()
+	h.Date = time.Now()
+	if o.date != "" {
+		if h.Date, err = time.Parse("2006-01-02", o.date); err != nil {
+			return nil, &failure{exitInput, fmt.Errorf("--date %q: expected a date such as 2026-01-31", o.date)}
+		}
+	}
+	h.Date = time.Date(h.Date.Year(), h.Date.Month(), h.Date.Day(), 0, 0, 0, 0, time.UTC)
+	for i := range plan.Products {
+		h.MostPoints = max(h.MostPoints, 1+len(plan.Products[i].Points))
+	}
+	return h, nil
+}
+
+// keepOnly drops the products that were not asked for; an unknown name is an error.
+func keepOnly(plan *workbook.Plan, only []string) error {
+	if len(only) == 0 {
+		return nil
+	}
+	var names []string
+	for i := range plan.Products {
+		names = append(names, plan.Products[i].Name)
+	}
+	for _, n := range plan.NotCalculated {
+		names = append(names, n.Product)
+	}
+	for _, o := range only {
+		if !slices.ContainsFunc(names, func(n string) bool { return strings.EqualFold(n, o) }) {
+			return &failure{exitInput, fmt.Errorf("--only %q: the plan has no product of that name; it has %s", o, strings.Join(names[:min(len(names), 20)], ", "))}
+		}
+	}
+	keep := func(n string) bool {
+		return slices.ContainsFunc(only, func(o string) bool { return strings.EqualFold(n, o) })
+	}
+	plan.Products = slices.DeleteFunc(plan.Products, func(p workbook.Product) bool { return !keep(p.Name) })
+	return nil
+}
+
+// progress is a bar on a terminal and nothing elsewhere.
+func progress(errs io.Writer, n int) *progressbar.ProgressBar {
+	f, ok := errs.(*os.File)
+	shown := ok && n > 3 && term.IsTerminal(int(f.Fd()))
+	return progressbar.NewOptions(n, progressbar.OptionSetWriter(errs), progressbar.OptionSetVisibility(shown),
+		progressbar.OptionSetDescription("calculating"), progressbar.OptionShowCount(), progressbar.OptionClearOnFinish(),
+		progressbar.OptionUseANSICodes(os.Getenv("NO_COLOR") == ""))
+}
+
+// runner takes the products of a plan through the whole job.
+type runner struct {
+	ctx      context.Context
+	plan     *workbook.Plan
+	head     *report.Head
+	folder   string
+	options  *checkOptions
+	progress *progressbar.ProgressBar
+	rows     []report.Row
+	files    []string
+}
+
+// ahead is how many products a processor may be ahead of the one that is written.
+const ahead = 4
+
+// all calculates every product on all processors and writes the results in the order of the plan.
+func (r *runner) all() error {
+	names := make([]string, len(r.plan.Products))
+	for i := range names {
+		names[i] = r.plan.Products[i].Name
+	}
+	r.files = fileNames(names)
+	jsonFile, err := newSpool(r.folder, "results.json")
+	if err != nil {
+		return err
+	}
+	defer jsonFile.drop()
+	bookFile, err := newSpool(r.folder, "results.xlsx")
+	if err != nil {
+		return err
+	}
+	defer bookFile.drop()
+	textFile, err := newSpool(r.folder, "report.txt")
+	if err != nil {
+		return err
+	}
+	defer textFile.drop()
+	js, book, text := report.NewJSON(jsonFile, r.head), report.NewWorkbook(bookFile, r.head), report.NewText(textFile, r.head)
+	add := func(d *done) error {
+		for _, w := range []func(*report.Product) error{js.Add, book.Add, text.Add} {
+			if err := w(d.product); err != nil {
+				return err
+			}
+		}
+		row := d.product.Row()
+		if !r.options.noPDF && !r.options.onePDF {
+			row.File = d.file
+		}
+		r.rows = append(r.rows, row)
+		return nil
+	}
+	if err := r.each(true, add); err != nil {
+		return err
+	}
+	r.progress.Finish()
+	for _, w := range []func() error{js.Close, book.Close, text.Close} {
+		if err := w(); err != nil {
+			return err
+		}
+	}
+	for _, f := range []*spooled{jsonFile, bookFile, textFile} {
+		if err := f.keep(); err != nil {
+			return err
+		}
+	}
+	if r.options.noPDF {
+		return nil
+	}
+	return writeWhole(filepath.Join(r.folder, "summary.pdf"), func(w io.Writer) error {
+		if !r.options.onePDF {
+			return report.WriteSummaryPDF(w, r.head, r.rows)
+		}
+		return report.OnePDF(w, r.head, r.rows, func(put func(*report.Product) error) error {
+			return r.each(false, func(d *done) error { return put(d.product) })
+		})
+	})
+}
+
+// done is one product after its calculation.
+type done struct {
+	product *report.Product
+	file    string
+	err     error
+}
+
+// each calculates every product and hands them on in the order of the plan. Product reports are written on the way,
+// if wanted. The order of what is handed on does not depend on the number of processors.
+func (r *runner) each(reports bool, take func(*done) error) error {
+	ctx, cancel := context.WithCancel(r.ctx)
+	defer cancel()
+	workers := runtime.GOMAXPROCS(0)
+	queue := make(chan chan *done, ahead*workers)
+	slots := make(chan struct{}, workers)
+	go func() {
+		defer close(queue)
+		for i := range r.plan.Products {
+			result := make(chan *done, 1)
+			select {
+			case <-ctx.Done():
+				return
+			case slots <- struct{}{}:
+			}
+			select {
+			case <-ctx.Done():
+				return
+			case queue <- result:
+			}
+			go func() {
+				defer func() { <-slots }()
+				result <- r.one(i, reports)
+			}()
+		}
+	}()
+	for result := range queue {
+		d := <-result
+		if r.ctx.Err() != nil {
+			return r.ctx.Err()
+		}
+		if d.err != nil {
+			return d.err
+		}
+		if d.product == nil { // refused while it was calculated; told by one
+			continue
+		}
+		if err := take(d); err != nil {
+			return err
+		}
+		if reports {
+			r.progress.Add(1)
+		}
+	}
+	return r.ctx.Err()
+}
+
+// one calculates, judges and reports one product.
+func (r *runner) one(i int, reports bool) (d *done) {
+	p := &r.plan.Products[i]
+	d = &done{file: r.files[i] + ".pdf"}
+	defer func() {
+		if fault := recover(); fault != nil {
+			d.err = fmt.Errorf("fault of the program at product %s: %v; please report it with the plan", p.Name, fault)
+		}
+	}()
+	d.product, d.err = r.calculate(p)
+	if d.err != nil || !reports || r.options.noPDF || r.options.onePDF {
+		return d
+	}
+	d.err = writeWhole(filepath.Join(r.folder, d.file), func(w io.Writer) error {
+		return report.WriteProductPDF(w, r.head, d.product)
+	})
+	return d
+}
+
+// tell prints the overview: a line a product, the worst first.
+func (r *runner) tell(w io.Writer) {
+	rows := slices.Clone(r.rows)
+	slices.SortStableFunc(rows, func(a, b report.Row) int { return weigh(a.Verdict) - weigh(b.Verdict) })
+	for _, n := range r.head.NotCalculated {
+		fmt.Fprintf(w, "%-14s %s\n", "not calculated", n.Product)
+	}
+	for _, row := range rows[:min(len(rows), most)] {
+		line := fmt.Sprintf("%-14s %s", row.Verdict, row.Product)
+		if row.Why != "" {
+			line += ": " + row.Why
+		}
+		fmt.Fprintln(w, line)
+	}
+	if len(rows) > most {
+		fmt.Fprintf(w, "… and %s more, in the summary\n", count(len(rows)-most, "product"))
+	}
+	fmt.Fprintf(w, "\nCalculated from the inputs, not measured; your food authority decides. Results in %s\n", r.folder)
+}
+
+// weigh puts the worst verdict first.
+func weigh(v rules.Verdict) int {
+	return slices.Index([]rules.Verdict{rules.NotMet, rules.CannotTell, rules.NotApplicable, rules.Met}, v)
+}
+
+// exit gives the exit code of the run.
+func (r *runner) exit() error {
+	if r.plan.Problems.Faults() > 0 || len(r.head.NotCalculated) > 0 {
+		return &failure{code: exitInput}
+	}
+	if len(r.rows) == 0 {
+		return &failure{exitInput, errors.New("the plan has no product to calculate")}
+	}
+	for _, row := range r.rows {
+		if row.Verdict != rules.Met {
+			return &failure{code: exitNotMet}
+		}
+	}
+	return nil
+}

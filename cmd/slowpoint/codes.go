@@ -1,0 +1,52 @@
+package main
+
+import (
+	"fmt"
+	"io"
+	"strings"
+
+	"github.com/spf13/cobra"
+
+	"slowpoint/rules/codes"
+)
+
+// confirm is said wherever starter limits are shown.
+const confirm = "Starter limits are not legal advice: confirm each against the code in force where you are, and have it confirmed by the person who answers for it."
+
+func codesCommand() *cobra.Command {
+	var where, stage string
+	cmd := &cobra.Command{
+		Use: "codes", Short: "List starter limits of published codes, to copy and confirm",
+		Example: "  slowpoint codes --where US --stage cook", Args: cobra.NoArgs,
+		RunE: func(cmd *cobra.Command, _ []string) error {
+			out := cmd.OutOrStdout()
+			found := codes.Find(where, stage)
+			for i := range found {
+				showCode(out, &found[i])
+			}
+			if len(found) == 0 {
+				return &failure{exitInput, fmt.Errorf("no starter limit matches --where %q --stage %q", where, stage)}
+			}
+			fmt.Fprintf(out, "%s. %s\nCopy with: slowpoint codes copy ID PLAN.xlsx\n", count(len(found), "starter limit"), confirm)
+			return nil
+		},
+	}
+	cmd.Flags().StringVar(&where, "where", "", "part of a jurisdiction, issuer or document")
+	cmd.Flags().StringVar(&stage, "stage", "", "stage: cook, cool, hold hot, …")
+	return cmd
+}
+
+// showCode prints one starter limit.
+func showCode(w io.Writer, r *codes.Row) {
+	fmt.Fprintf(w, "%s  [%s, %s] %s\n", r.ID, r.Where, r.Stage, r.Title)
+	fmt.Fprintf(w, "    rule %s", r.Cells["Rule"])
+	for _, h := range []string{"From", "To", "Time", "Second time", "Clock starts", "Counting", "Compare", "Compare time", "Reference temperature", "z", "Log reductions", "Allowance", "Humidity", "Share of stage", "Table"} {
+		if v := r.Cells[h]; v != "" {
+			fmt.Fprintf(w, "; %s %s", strings.ToLower(h), v)
+		}
+	}
+	fmt.Fprintf(w, "\n    %s\n", r.Source)
+	if n := r.Cells["Note"]; n != "" {
+		fmt.Fprintf(w, "    %s\n", n)
+	}
+}

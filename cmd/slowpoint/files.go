@@ -1,0 +1,90 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+	"strings"
+	"unicode"
+)
+
+// writeWhole writes a file whole or not at all: into a temporary file beside it, then renamed.
+func writeWhole(path string, write func(io.Writer) error) (err error) {
+	f, err := os.CreateTemp(filepath.Dir(path), ".slowpoint-*")
+	if err != nil {
+		return cannotWrite(path, err)
+	}
+	defer func() {
+		if err != nil {
+			f.Close()
+			os.Remove(f.Name())
+			err = cannotWrite(path, err)
+		}
+	}()
+	if err = write(f); err != nil {
+		return err
+	}
+	if err = f.Sync(); err != nil {
+		return err
+	}
+	if err = f.Close(); err != nil {
+		return err
+	}
+	if err = os.Chmod(f.Name(), 0o644); err != nil {
+		return err
+	}
+	return os.Rename(f.Name(), path)
+}
+
+// cannotWrite says which file could not be written and why, without the name of the temporary file.
+func cannotWrite(path string, err error) error {
+	var p *os.PathError
+	var l *os.LinkError
+	switch {
+	case errors.As(err, &p):
+		err = p.Err
+	case errors.As(err, &l):
+		err = l.Err
+	}
+	return fmt.Errorf("%s cannot be written (%w): name another folder with --out, or make room", path, err)
+}
+
+// makeFolder makes the folder of the results and tries whether it takes files.
+func makeFolder(path string) error {
+	if err := os.MkdirAll(path, 0o755); err != nil {
+		return cannotWrite(path, err)
+	}
+	f, err := os.CreateTemp(path, ".slowpoint-*")
+	if err != nil {
+		return cannotWrite(path, err)
+	}
+	f.Close()
+	return os.Remove(f.Name())
+}
+
+// fileNames gives each product a file name of its own, without its ending: letters, digits, - and _ stay,
+// everything else becomes _, and a number is added where two collide (also when only their case differs).
+func fileNames(products []string) []string {
+	out := make([]string, len(products))
+	taken := map[string]bool{"summary": true, "results": true, "report": true}
+	for i, p := range products {
+		name := strings.Map(func(r rune) rune {
+			if unicode.IsLetter(r) || unicode.IsDigit(r) || r == '-' || r == '_' {
+				return r
+			}
+			return '_'
+		}, p)
+		for len(name) > 120 { // file systems take 255 bytes
+			name = string([]rune(name)[:len([]rune(name))-1])
+		}
+		try := name
+		for n := 2; taken[strings.ToLower(try)]; n++ {
+			try = fmt.Sprintf("%s_%d", name, n)
+		}
+		taken[strings.ToLower(try)] = true
+		out[i] = try
+	}
+	return out
+}

@@ -1,0 +1,76 @@
+// Command slowpoint predicts how cooked and chilled food heats and cools through a plan's steps, finds the slowest point,
+// judges the limits that the user entered and writes the report.
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"os/signal"
+	"syscall"
+
+	"github.com/spf13/cobra"
+)
+
+// The exit codes.
+const (
+	exitMet    = 0 // every must limit is met for every product
+	exitNotMet = 1 // something is not met or cannot be told
+	exitInput  = 2 // the input, or part of it, could not be used
+	exitFault  = 3 // the results could not be written, or a fault of the program
+)
+
+// failure is an error with the exit code that it means. A failure without a cause has been told already.
+type failure struct {
+	code  int
+	cause error
+}
+
+func (f *failure) Error() string {
+	if f.cause == nil {
+		return ""
+	}
+	return f.cause.Error()
+}
+
+func main() { os.Exit(run(os.Args[1:], os.Stdin, os.Stdout, os.Stderr)) }
+
+// run is the whole program: results to out, everything else to errs.
+func run(args []string, in io.Reader, out, errs io.Writer) int {
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	defer stop()
+	root := rootCommand()
+	root.SetArgs(args)
+	root.SetIn(in)
+	root.SetOut(out)
+	root.SetErr(errs)
+	err := root.ExecuteContext(ctx)
+	if err == nil {
+		return exitMet
+	}
+	code := exitInput // cobra's own complaints are about what was typed
+	var f *failure
+	if errors.As(err, &f) {
+		code = f.code
+	}
+	if text := err.Error(); text != "" {
+		fmt.Fprintln(errs, "slowpoint: "+text)
+	}
+	return code
+}
+
+func rootCommand() *cobra.Command {
+	root := &cobra.Command{
+		Use:   "slowpoint",
+		Short: "Predict the slowest point of cooked and chilled food and judge your time-temperature limits",
+		Long: `Slowpoint reads products and cook, rest, chill, hold and reheat steps from a spreadsheet, predicts the temperature of every
+place in the food through the whole chain, finds the slowest point, judges the limits that you entered and writes a report.
+It supports planning; it does not replace measurement. Your food authority decides.`,
+		SilenceUsage: true, SilenceErrors: true,
+		CompletionOptions: cobra.CompletionOptions{HiddenDefaultCmd: true},
+	}
+	root.AddCommand(checkCommand(), readCommand(), blankCommand(), codesCommand(), foodsCommand(), verifyCommand(), versionCommand())
+	return root
+}

@@ -1,0 +1,82 @@
+package main
+
+import (
+	"fmt"
+	"io"
+
+	"github.com/spf13/cobra"
+
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model/cell"
+)
+
+func readCommand() *cobra.Command {
+	return &cobra.Command{
+		Use: "read PLAN", Short: "Say what is understood of a plan and everything that is wrong with it; calculate nothing",
+		Example: "  slowpoint read plan.xlsx", Args: cobra.ExactArgs(1),
+		RunE: func(cmd *cobra.Command, args []string) error {
+			plan, err := workbook.Read(args[0])
+			if err != nil {
+				return &failure{exitInput, err}
+			}
+			understood(cmd.OutOrStdout(), plan)
+			tellProblems(cmd.OutOrStdout(), plan.Problems)
+			if plan.Problems.Faults() > 0 {
+				return &failure{code: exitInput}
+			}
+			return nil
+		},
+	}
+}
+
+// understood says what a plan holds.
+func understood(w io.Writer, p *workbook.Plan) {
+	fmt.Fprintf(w, "%s: %s can be calculated, %s cannot; %s\n", p.Name, count(len(p.Products), "product"), count(len(p.NotCalculated), "product"), count(len(p.Limits), "limit"))
+	for i := range p.Products {
+		q := &p.Products[i]
+		steps := ""
+		for k := range q.Steps {
+			if k > 0 {
+				steps += ", "
+			}
+			steps += fmt.Sprintf("%s %s", q.Steps[k].Name, minutes(q.Steps[k].DurationS))
+		}
+		fmt.Fprintf(w, "  %s: %s, %s from %.4g °C; %s\n", q.Name, q.Shape.Name, q.Product.Food.Name, q.StartC, steps)
+	}
+	for _, n := range p.NotCalculated {
+		fmt.Fprintf(w, "  %s: not calculated (%s)\n", n.Product, count(n.Because.Faults(), "error"))
+	}
+}
+
+// most is how many problems are told one by one.
+const most = 100
+
+// tellProblems prints problems, repeats down a column folded, the faults before the rest.
+func tellProblems(w io.Writer, es cell.Errors) {
+	es = es.Fold()
+	for _, level := range []cell.Level{cell.Fault, cell.Warning, cell.Note} {
+		n := 0
+		for _, e := range es {
+			if e.Level != level {
+				continue
+			}
+			if n++; n <= most {
+				fmt.Fprintf(w, "%s: %s\n", level, e.Error())
+			}
+		}
+		if n > most {
+			fmt.Fprintf(w, "%s: %d more of this kind\n", level, n-most)
+		}
+	}
+}
+
+// count writes a number with its noun.
+func count(n int, noun string) string {
+	if n == 1 {
+		return "1 " + noun
+	}
+	return fmt.Sprintf("%d %ss", n, noun)
+}
+
+// minutes writes a duration.
+func minutes(s float64) string { return fmt.Sprintf("%.4g min", s/60) }
