@@ -68,6 +68,9 @@ func (st *Step) on(f *Face) *Exposure {
 	return &st.Exposure
 }
 
+// roundingM is how far outside the food a point may seem to lie, m: sizes and points are typed with few digits.
+const roundingM = 1e-6
+
 type checker struct {
 	product *Product
 	found   cell.Errors
@@ -131,7 +134,7 @@ func (c *checker) points() {
 	for _, pt := range p.Points {
 		got := [3]float64{math.Abs(pt.UpM), math.Abs(pt.AcrossM), math.Abs(pt.AlongM)}
 		for i, name := range []string{"Up", "Across", "Along"} {
-			if got[i] > half[i]*(1+1e-9)+1e-12 {
+			if got[i] > half[i]+roundingM {
 				c.add(pt.At, name, fmt.Sprintf("%g mm", 1000*got[i]), fmt.Sprintf("the point %s lies outside the food, which reaches %g mm from its centre in this direction", pt.Name, 1000*half[i]), "measure from the geometric centre")
 			}
 		}
