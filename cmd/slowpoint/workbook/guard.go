@@ -118,6 +118,34 @@ func (m *meter) part(f *zip.File, use func(io.Reader) error) error {
 	return nil
 }
 
+// tagged stops XML that is no workbook: megabytes without an element, or more elements than a plan can have.
+type tagged struct {
+	r           io.Reader
+	bare, count int // bytes since the last element; elements, begun and ended
+}
+
+const (
+	mostBare     = 4 << 20
+	mostElements = 24_000_000
+)
+
+func (t *tagged) Read(p []byte) (int, error) {
+	n, err := t.r.Read(p)
+	if i := bytes.LastIndexByte(p[:n], '<'); i >= 0 {
+		t.bare = n - i
+		t.count += bytes.Count(p[:n], []byte("<"))
+	} else {
+		t.bare += n
+	}
+	switch {
+	case t.bare > mostBare:
+		return 0, fmt.Errorf("it holds more than %d MB in one piece", mostBare>>20)
+	case t.count > mostElements:
+		return 0, errTooBig
+	}
+	return n, err
+}
+
 // wellFormed reads XML to its end without making anything of it.
 func wellFormed(r io.Reader) error {
 	return elements(r, func(*xml.Decoder, xml.StartElement) error { return nil }, nil)
@@ -126,7 +154,7 @@ func wellFormed(r io.Reader) error {
 // elements walks through XML: start is called for each element, end (which may be nil) for each end. Declarations are refused:
 // no workbook needs them, and they can make a small file expand without end.
 func elements(r io.Reader, start func(*xml.Decoder, xml.StartElement) error, end func(name string)) error {
-	d := xml.NewDecoder(r)
+	d := xml.NewDecoder(&tagged{r: r})
 	for any := false; ; {
 		t, err := d.Token() // Token and not RawToken: it checks that elements match
 		switch {

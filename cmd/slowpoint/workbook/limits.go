@@ -210,6 +210,8 @@ func (ls *limits) appliesTo(l *line, lim *rules.Limit) []*product {
 	switch {
 	case typed == "":
 		return nil
+	case ls.blind():
+		return nil
 	case key(typed) == "all":
 		lim.Applies.All = true
 		return ls.products
@@ -282,6 +284,9 @@ func (ls *limits) stages(l *line, lim *rules.Limit, concerned []*product) {
 		return
 	}
 	for _, p := range concerned { // one product with one of the stages is enough
+		if len(p.because) > 0 {
+			return // its stages may be what is at fault
+		}
 		for i := range p.Steps {
 			for _, s := range append(lim.Stages, lim.Then) {
 				if s != nil && p.Steps[i].Stage == s {
@@ -291,18 +296,9 @@ func (ls *limits) stages(l *line, lim *rules.Limit, concerned []*product) {
 		}
 	}
 	e := stageNowhere.problem(l.at("Stage"), cell.Fault, "Stage", typed)
-	if len(concerned) > 0 && anySteps(concerned) {
+	if len(concerned) > 0 {
 		ls.add(e) // the row itself is sound: its verdict is not applicable, or cannot tell
 	}
-}
-
-func anySteps(ps []*product) bool {
-	for _, p := range ps {
-		if len(p.Steps) > 0 {
-			return true
-		}
-	}
-	return false
 }
 
 // where reads which places a limit is about.
@@ -320,6 +316,10 @@ func (ls *limits) where(l *line, lim *rules.Limit, concerned []*product) {
 			lim.Where.Name = w
 			return
 		}
+	}
+	if len(concerned) == 0 {
+		lim.Where.Name = typed // nobody knows whose point it would be
+		return
 	}
 	lacking, have := "", 0
 	known := append([]string(nil), whereWords...)

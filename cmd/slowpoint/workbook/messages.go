@@ -34,11 +34,12 @@ var (
 	notUTF8       = saying{"The file is not in UTF-8 ({1})", "save it as CSV UTF-8"}
 
 	// rows and cells
-	keyMissing    = saying{"{1} is missing, so nobody knows what the row belongs to", "fill it, or clear the row"}
+	keyMissing    = saying{"stands in a row without {1} and belongs to nothing", "fill the row, clear it, or put a # in front of the heading if the column is your own"}
 	missing       = saying{"{1} is missing", "{2}"}
 	hiddenRow     = saying{"The row is hidden", "unhide it or delete it; a hidden row is never used and never skipped in silence"}
 	mergedCells   = saying{"The cells {1} are merged", "unmerge them and fill each cell"}
-	notAChoice    = saying{"is not a {1}{2}", "choose from: {3}"}
+	notAChoice    = saying{"is not a word of the column {1}{2}", "choose from: {3}"}
+	notAnAnswer   = saying{"is not an answer to the item {1}", "choose from: {2}"}
 	duplicate     = saying{"is there twice; the first is in row {1}", "give each {2} a name of its own"}
 	errorValue    = saying{"is an error of the spreadsheet", "mend the formula or type the value"}
 	noResult      = saying{"The formula in {1} has no stored result", "open the workbook in your spreadsheet program, let it calculate, and save it again; or type the value"}
@@ -69,7 +70,7 @@ var (
 	processUnknown  = saying{"has no rows in the sheet Steps{1}", "add its steps, or correct the name"}
 	processUnused   = saying{"is a process that no product uses{1}", "correct the name, or take the row out"}
 	productUnknown  = saying{"is not a product of the sheet Products{1}", "correct the name"}
-	foodMixed       = saying{"is given both as a composition and as measured properties", "keep the parts of the composition, or Conductivity and Specific heat"}
+	foodMixed       = saying{"is a measured property, but the row gives a composition too", "keep the parts of the composition, or Conductivity, Density and Specific heat"}
 	foodNothing     = saying{"The food has neither a composition nor measured properties", "fill Water, Protein, Fat, Carbohydrate, Fibre and Ash, or Conductivity, Density and Specific heat"}
 	foodPartly      = saying{"{1} is missing: measured properties are Conductivity, Density and Specific heat together", "fill it"}
 	foodTwice       = saying{"is there twice; a composition takes one row (the first is in row {1})", "keep one row, or give measured properties with At temperature"}

@@ -150,7 +150,7 @@ func (r *reader) readPoints() {
 		}
 		p := r.byName[key(owner)]
 		if p == nil {
-			if owner != "" {
+			if owner != "" && !r.blind() {
 				l.fault("Product", owner, productUnknown, meant(owner, r.productNames()))
 			}
 			continue

@@ -7,6 +7,7 @@ import (
 	"fmt"
 	"os"
 	"path/filepath"
+	"sort"
 	"strconv"
 	"strings"
 
@@ -47,7 +48,7 @@ func Read(name string) (*Plan, error) {
 		}
 	}
 	p := &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest, Columns: map[string]map[string]int{}}
-	r := &reader{plan: p, formulas: map[cell.Ref]*formulas{}}
+	r := &reader{plan: p, formulas: map[cell.Ref]*formulas{}, unread: map[string]cell.Errors{}}
 	if err := r.sheets(grids); err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)
 	}
@@ -60,7 +61,8 @@ type reader struct {
 	plan     *Plan
 	tables   map[string]*table // by the name in Sheets
 	grids    map[string]*grid
-	ignore   map[string]bool // headings of the item Ignore columns, by key
+	unread   map[string]cell.Errors // why a sheet, or a part of it, could not be read
+	ignore   map[string]bool        // headings of the item Ignore columns, by key
 	decimal  unit.Decimal
 	formulas map[cell.Ref]*formulas // by sheet and column
 	inOrder  []*formulas
@@ -101,7 +103,11 @@ func (r *reader) formula(at cell.Ref) {
 // sheets sorts the grids out: which sheet of a plan each is, and which decimal sign the whole file shows.
 func (r *reader) sheets(grids []*grid) error {
 	r.grids, r.tables, r.ignore = map[string]*grid{}, map[string]*table{}, map[string]bool{}
-	for _, g := range grids {
+	inOrder := append([]*grid(nil), grids...)
+	sort.SliceStable(inOrder, func(i, j int) bool { // files have no order of their own
+		return grids[0].csv && rank(inOrder[i].name) < rank(inOrder[j].name)
+	})
+	for _, g := range inOrder {
 		r.plan.Sheets = append(r.plan.Sheets, g.name)
 	}
 	known := names(Sheets, func(s *Sheet) string { return s.Name })
@@ -118,24 +124,39 @@ func (r *reader) sheets(grids []*grid) error {
 			}
 			r.add(unknownSheet.problem(at, cell.Warning, "", g.name, hint))
 		case r.grids[s.Name] != nil:
-			r.add(doubledSheet.problem(at, cell.Fault, "", g.name, r.grids[s.Name].name, g.name))
+			e := doubledSheet.problem(at, cell.Fault, "", g.name, r.grids[s.Name].name, g.name)
+			r.add(e)
+			r.unread[s.Name] = append(r.unread[s.Name], e)
 		default:
 			r.grids[s.Name] = g
 		}
 	}
 	if r.grids["Products"] == nil {
 		var got []string
-		for i, g := range grids {
+		for i, name := range r.plan.Sheets {
 			if i == 8 {
 				got = append(got, "…")
 				break
 			}
-			got = append(got, g.name)
+			got = append(got, name)
 		}
 		return fmt.Errorf("this is not a plan: it has no visible sheet Products (its sheets are %s); slowpoint blank FILE.xlsx writes a plan to fill in", and(got))
 	}
 	return nil
 }
+
+// rank is the place of a sheet in the list Sheets; unknown ones come last.
+func rank(name string) int {
+	for i, s := range Sheets {
+		if key(s.Name) == key(name) {
+			return i
+		}
+	}
+	return len(Sheets)
+}
+
+// blind tells whether no product could be read at all: then nothing can be held against their names.
+func (r *reader) blind() bool { return len(r.products) == 0 }
 
 // read reads the sheets in the order in which they need each other.
 func (r *reader) read() {
@@ -149,6 +170,11 @@ func (r *reader) read() {
 	r.readFoods()
 	r.readCourses()
 	r.readProducts()
+	for _, p := range r.products { // what such a sheet would say of a product nobody knows
+		for _, name := range []string{"Foods", "Steps", "Faces"} {
+			p.suffer(r.unread[name])
+		}
+	}
 	r.readSteps()
 	r.readFaces()
 	r.readPoints()
@@ -254,7 +280,7 @@ func (r *reader) planItem(l *line, known, item, value string) {
 				return c
 			}
 		}
-		l.fault("Value", value, notAChoice, known, "", strings.Join(planChoices[known], ", "))
+		l.fault("Value", value, notAnAnswer, known, strings.Join(planChoices[known], ", "))
 		return ""
 	}
 	switch known {
@@ -351,7 +377,7 @@ func (r *reader) notYet() {
 				name := l.words("Product")
 				p := r.byName[key(name)]
 				if p == nil {
-					if name != "" {
+					if name != "" && !r.blind() {
 						l.fault("Product", name, productUnknown, meant(name, r.productNames()))
 					}
 					continue

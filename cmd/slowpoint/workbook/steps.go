@@ -115,7 +115,7 @@ func (r *reader) readSteps() {
 		}
 		pr := r.process(procName)
 		pr.used = users[key(procName)] != nil
-		if !pr.used {
+		if !pr.used && !r.blind() {
 			var known []string
 			for _, p := range r.products {
 				known = append(known, p.Process)
@@ -411,7 +411,7 @@ func (r *reader) readFaces() {
 		pr := r.processes[key(procName)]
 		if pr == nil {
 			f.course = r.exposure(l, &f.Exposure, 0)
-			if procName != "" {
+			if procName != "" && len(r.unread["Steps"]) == 0 {
 				l.fault("Process", procName, processUnknown, meant(procName, names(r.order, func(p *process) string { return p.name })))
 			}
 			continue
@@ -483,17 +483,14 @@ func (r *reader) chains() {
 		}
 		pr := r.processes[key(p.Process)]
 		if pr == nil || len(pr.steps) == 0 {
-			if t := r.tables["Steps"]; t == nil || t.whole() {
+			if len(r.unread["Steps"]) == 0 {
 				p.line.fault("Process", p.Process, processUnknown, meant(p.Process, names(r.order, func(p *process) string { return p.name })))
-				p.suffer(p.line.because)
-			} else {
-				p.line.fault("Process", p.Process, saying{"has no steps that can be read: the sheet Steps lacks headings", "mend the headings of the sheet Steps"})
 				p.suffer(p.line.because)
 			}
 			continue
 		}
 		r.chain(p, pr)
-		r.ask(p)
+		r.ask(p, pr)
 	}
 }
 
@@ -601,7 +598,7 @@ func (p *product) faceFits(f *face) {
 }
 
 // ask tells what the model cannot calculate, as far as the product was understood.
-func (r *reader) ask(p *product) {
+func (r *reader) ask(p *product, pr *process) {
 	if p.Shape == nil || len(p.Steps) == 0 || p.Shape != model.LayeredSlab && p.Food == nil {
 		return
 	}
@@ -616,13 +613,26 @@ func (r *reader) ask(p *product) {
 			}
 		}
 	}
-	told := map[cell.Ref]bool{}
+	type row struct {
+		sheet string
+		n     int
+	}
+	told := map[row]bool{} // what may follow from a fault that was told is not told
 	for _, e := range p.because {
-		told[e.At] = true
+		told[row{e.At.Sheet, e.At.Row}] = true
+	}
+	for _, l := range p.lines(pr) {
+		if !l.sound() {
+			told[row{l.t.grid.name, l.row.n}] = true
+		}
+	}
+	unsure := map[string]bool{} // without its sizes nobody knows where the product ends
+	if t := r.tables["Points"]; t != nil && !p.line.sound() {
+		unsure[t.grid.name] = true
 	}
 	for _, e := range model.Check(p.Product.Product, p.Steps) {
 		e = r.plan.Locate(e)
-		if told[e.At] {
+		if told[row{e.At.Sheet, e.At.Row}] || unsure[e.At.Sheet] {
 			continue
 		}
 		r.add(e)
@@ -630,4 +640,25 @@ func (r *reader) ask(p *product) {
 			p.because.Add(e)
 		}
 	}
+}
+
+// lines are the rows that a product is made of: its own, those of its food, steps and faces.
+func (p *product) lines(pr *process) []*line {
+	out := []*line{p.line}
+	if p.food != nil {
+		for _, f := range p.food.lines {
+			out = append(out, f.line)
+		}
+	}
+	for _, s := range pr.steps {
+		if o := p.own[key(s.Name)]; o != nil {
+			out = append(out, o.line)
+		} else {
+			out = append(out, s.line)
+		}
+		for _, f := range append(s.faces[:len(s.faces):len(s.faces)], p.faces[key(s.Name)]...) {
+			out = append(out, f.line)
+		}
+	}
+	return out
 }

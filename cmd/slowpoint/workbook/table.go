@@ -34,6 +34,7 @@ type line struct {
 	row      *gridRow
 	because  cell.Errors // the faults that it has, or that it suffers from
 	readings []cell.Reading
+	merged   []block // merged cells that the row has a part of
 }
 
 // splitHeading divides a heading into its name and what stands in brackets (or a % behind the name).
@@ -85,7 +86,7 @@ func (t *table) ref(row, col int) cell.Ref { return cell.Ref{Sheet: t.grid.name,
 func (r *reader) open(g *grid, s *Sheet) *table {
 	t := &table{sheet: s, grid: g}
 	if g.refused != "" {
-		r.add(cell.Error{At: cell.Ref{Sheet: g.name}, Msg: g.refused, Hint: g.mend})
+		r.cannotRead(s, cell.Error{At: cell.Ref{Sheet: g.name}, Msg: g.refused, Hint: g.mend})
 		return nil
 	}
 	if len(g.rows) == 0 {
@@ -144,6 +145,12 @@ func findHeader(g *grid, s *Sheet) (int, bool) {
 	return best, false
 }
 
+// cannotRead tells why a sheet cannot be read.
+func (r *reader) cannotRead(s *Sheet, e cell.Error) {
+	r.add(e)
+	r.unread[s.Name] = append(r.unread[s.Name], e)
+}
+
 // missingHeadings tells which needed headings are not there.
 func (r *reader) missingHeadings(t *table, found map[string]*head) {
 	var lack []string
@@ -152,7 +159,7 @@ func (r *reader) missingHeadings(t *table, found map[string]*head) {
 			lack = append(lack, c.Heading)
 		}
 	}
-	r.add(noHeader.problem(t.ref(t.head, 0), cell.Fault, "", "", and(lack), isAre(len(lack))))
+	r.cannotRead(t.sheet, noHeader.problem(t.ref(t.head, 0), cell.Fault, "", "", and(lack), isAre(len(lack))))
 }
 
 // headings checks every heading: known, once, with a unit of its quantity. It returns the columns that are the user's own.
@@ -244,14 +251,16 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 	}
 	told := map[int]bool{} // columns without heading that were told already
 	var all cell.Errors    // what every row suffers from
+	end := len(g.rows)
 	if second := secondTable(g, t.sheet, from); second > 0 {
+		end = second
 		last := g.rows[len(g.rows)-1].n
 		e := twoTables.problem(t.ref(t.head, 0), cell.Fault, "", "", g.extent(t.head, g.rows[second-1].n), g.extent(g.rows[second].n, last))
-		r.add(e)
+		r.cannotRead(t.sheet, e)
 		all.Add(e)
 	}
 	t.lines = make([]*line, 0, len(g.rows)-from)
-	for i := from; i < len(g.rows); i++ {
+	for i := from; i < end; i++ {
 		row := &g.rows[i]
 		l := &line{r: r, t: t, row: row}
 		filled := false
@@ -264,7 +273,7 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 				l.suffer(h.faults)
 			case !used[col]:
 				mend := ""
-				if g.commas {
+				if c := row.cells[j].text[0]; g.commas && c >= '0' && c <= '9' {
 					mend = "; a value with a decimal comma needs quotation marks"
 				}
 				e := noHeading.problem(t.ref(row.n, col), cell.Fault, "", row.cells[j].text, cell.ColumnName(col), mend)
@@ -276,7 +285,7 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 			}
 			filled = true
 		}
-		if !filled {
+		if !filled || l.stray() {
 			continue
 		}
 		l.suffer(all)
@@ -286,6 +295,21 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 		t.lines = append(t.lines, l)
 	}
 	r.mergedRows(t)
+}
+
+// stray tells of text without a key, such as a remark below the table: a row in which no needed cell is filled.
+func (l *line) stray() bool {
+	for _, c := range l.t.sheet.Columns {
+		if c.Needed && l.filled(c.Heading) {
+			return false
+		}
+	}
+	e := &l.row.cells[0]
+	at := l.t.ref(l.row.n, int(e.col))
+	if len(l.because) == 0 {
+		l.r.add(keyMissing.problem(at, cell.Fault, "", e.text, l.t.sheet.Columns[0].Heading))
+	}
+	return true
 }
 
 // secondTable gives the index of a further row that holds all needed headings and more than one; 0 if there is none.
@@ -331,6 +355,7 @@ func (r *reader) mergedRows(t *table) {
 		for _, l := range t.lines {
 			if l.row.n >= b.top && l.row.n <= b.bottom {
 				l.because.Add(e)
+				l.merged = append(l.merged, b)
 			}
 		}
 	}
@@ -407,9 +432,7 @@ func (l *line) broken(heading string, e *entry) bool {
 func (l *line) words(heading string) string {
 	c, e := l.t.sheet.Column(heading), l.entry(heading)
 	if e.kind == blank {
-		if c.Needed {
-			l.fault(heading, "", missing, heading, mendMissing(c))
-		}
+		l.lacks(c)
 		return ""
 	}
 	if l.broken(heading, e) {
@@ -421,6 +444,20 @@ func (l *line) words(heading string) string {
 	}
 	l.note(heading, s, s, "")
 	return s
+}
+
+// lacks tells of a blank cell where one must be filled, unless it is blank because it is merged with others, which was told.
+func (l *line) lacks(c *Column) {
+	if !c.Needed {
+		return
+	}
+	at := l.at(c.Heading)
+	for _, b := range l.merged {
+		if at.Col >= b.left && at.Col <= b.right {
+			return
+		}
+	}
+	l.fault(c.Heading, "", missing, c.Heading, mendMissing(c))
 }
 
 func mendMissing(c *Column) string {
@@ -436,10 +473,11 @@ func mendMissing(c *Column) string {
 // choice reads a cell as one of the words of its column, and gives that word as it stands in the list; "" for a blank or a fault.
 func (l *line) choice(heading string) string {
 	c, e := l.t.sheet.Column(heading), l.entry(heading)
-	if e.kind == blank || l.broken(heading, e) {
-		if e.kind == blank && c.Needed {
-			l.fault(heading, "", missing, heading, mendMissing(c))
-		}
+	if e.kind == blank {
+		l.lacks(c)
+		return ""
+	}
+	if l.broken(heading, e) {
 		return ""
 	}
 	for _, w := range c.Choices {
@@ -448,7 +486,7 @@ func (l *line) choice(heading string) string {
 			return w
 		}
 	}
-	l.fault(heading, e.text, notAChoice, strings.ToLower(heading[:1])+heading[1:], meant(e.text, c.Choices), strings.Join(c.Choices, ", "))
+	l.fault(heading, e.text, notAChoice, heading, meant(e.text, c.Choices), strings.Join(c.Choices, ", "))
 	return ""
 }
 
@@ -465,9 +503,7 @@ func (l *line) number(heading string) *float64 {
 func (l *line) value(heading string) *unit.Value {
 	c, e := l.t.sheet.Column(heading), l.entry(heading)
 	if e.kind == blank {
-		if c.Needed {
-			l.fault(heading, "", missing, heading, mendMissing(c))
-		}
+		l.lacks(c)
 		return nil
 	}
 	h := l.t.place[heading]

@@ -533,6 +533,9 @@ func (b *book) cell(d *xml.Decoder, e xml.StartElement) (entry, error) {
 			}
 		}
 	}
+	if c.kind == text && brokenWords[c.text] {
+		c.kind = broken
+	}
 	if len(c.text) > 4*mostText {
 		return c, fmt.Errorf("the cell %s holds more than %d characters", attr(e, "r"), mostText)
 	}
