@@ -14,7 +14,10 @@ func judgeDuration(v *view) Finding {
 	o := none(NotMet, "duration most")
 	least := l.CompareTime == AtLeast || l.CompareTime == MoreThan
 	o.value, o.margin, o.at, o.start, o.end = s/60, *l.TimeS-s, end, v.stages[0].a, end
-	o.holes = holes{"value": lasting(s, 1), "stage": v.stageNames()}
+	o.holes = holes{"value": lasting(s, 1), "stage": "stage " + v.stageNames()}
+	if len(l.Stages) > 1 {
+		o.holes["stage"] = "stages " + v.stageNames()
+	}
 	if least {
 		o.word, o.margin = "duration least", s-*l.TimeS
 		o.holes["value"] = lasting(s, -1)

@@ -228,11 +228,7 @@ func TestForms(t *testing.T) {
 
 // filled tells when a limit fills a column that its kind does not use, or leaves one blank that it needs.
 func filled(t *testing.T, l *Limit) {
-	has := map[string]bool{"From": l.FromC != nil, "To": l.ToC != nil, "Time": l.TimeS != nil, "Second time": l.SecondS != nil,
-		"Clock starts": l.Clock != Clock{}, "Counting": l.Counting != NotCounted, "Compare": l.Compare != Usual, "Compare time": l.CompareTime != Usual,
-		"Reference temperature": l.ReferenceC != nil, "z": l.ZK != nil, "z above the reference temperature": l.ZAboveK != nil, "D": l.DS != nil,
-		"Log reductions": l.Logs != nil, "Allowance": l.AllowanceK != nil, "Humidity": l.HumidityPc != nil, "Share of stage": l.SharePc != nil,
-		"Table": l.Table != nil, "Answer": l.Answer != "", "Stage": len(l.Stages) > 0, "Where": l.Where.Name != ""}
+	has := l.filled()
 	for column, is := range has {
 		if is && !l.Kind.Uses(column) {
 			t.Errorf("%s does not use %s", l.Kind.Name, column)

@@ -49,6 +49,9 @@ func judgeOne(l *Limit, c *courses) Finding {
 	if fs := l.Faults(); len(fs) > 0 {
 		return v.blank(CannotTell, say("faulty", holes{"fault": fs[0].Msg}))
 	}
+	if blank := l.missing(); blank != "" {
+		return v.blank(CannotTell, say("faulty", holes{"fault": blank + " is blank"}))
+	}
 	if s := v.lacks(); s != nil {
 		if l.Applies.All {
 			return v.blank(NotApplicable, say("stage lacking", holes{"stage": s.Name}))

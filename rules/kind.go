@@ -1,5 +1,7 @@
 package rules
 
+import "strings"
+
 // Kind is a kind of limit: the word of the column Rule. Adding one takes its file, its line in Kinds and its test.
 type Kind struct {
 	Name, Help string
@@ -116,4 +118,29 @@ func (l *Limit) clockFaults(add func(column, msg, hint string)) {
 	case c.AtC != nil && l.FromC != nil && *c.AtC != *l.FromC && l.Kind != ByTheEnd:
 		add("From", "Clock starts names the temperature that is crossed, and From names another", "clear From")
 	}
+}
+
+// filled tells which of the columns that kinds differ in are filled.
+func (l *Limit) filled() map[string]bool {
+	return map[string]bool{"Stage": len(l.Stages) > 0, "Where": l.Where.Name != "", "From": l.FromC != nil, "To": l.ToC != nil,
+		"Time": l.TimeS != nil, "Second time": l.SecondS != nil, "Clock starts": l.Clock != Clock{}, "Counting": l.Counting != NotCounted,
+		"Compare": l.Compare != Usual, "Compare time": l.CompareTime != Usual, "Reference temperature": l.ReferenceC != nil,
+		"z": l.ZK != nil, "z above the reference temperature": l.ZAboveK != nil, "D": l.DS != nil, "Log reductions": l.Logs != nil,
+		"Allowance": l.AllowanceK != nil, "Humidity": l.HumidityPc != nil, "Share of stage": l.SharePc != nil, "Table": l.Table != nil,
+		"Answer": l.Answer != ""}
+}
+
+// missing names the columns of which one must be filled and none is; "" if there are none.
+func (l *Limit) missing() string {
+	has := l.filled()
+	for _, either := range l.Kind.Needs {
+		any := false
+		for _, column := range either {
+			any = any || has[column]
+		}
+		if !any {
+			return strings.Join(either, " or ")
+		}
+	}
+	return ""
 }

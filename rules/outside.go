@@ -14,9 +14,9 @@ func judgeOutside(v *view) Finding {
 		deep := math.Inf(-1) // the deepest point in the band, K; negative: how far off the nearest is
 		for _, iv := range v.stages {
 			s := p.in(iv)
-			for i := range s.c {
-				deep = math.Max(deep, math.Min(s.c[i]-*l.FromC, *l.ToC-s.c[i]))
-				if i > 0 && (s.c[i] > *l.ToC) != (s.c[i-1] > *l.ToC) && (s.c[i] < *l.FromC) != (s.c[i-1] < *l.FromC) {
+			for i, x := range s.c {
+				deep = math.Max(deep, math.Min(x-*l.FromC, *l.ToC-x))
+				if mid := (*l.FromC + *l.ToC) / 2; i > 0 && (x-mid)*(s.c[i-1]-mid) <= 0 {
 					deep = math.Max(deep, (*l.ToC-*l.FromC)/2)
 				}
 			}
