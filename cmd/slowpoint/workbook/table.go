@@ -52,18 +52,31 @@ func splitHeading(s string) (name, inBrackets string) {
 	return s, ""
 }
 
+// byKey finds the columns of a sheet by the key of their headings.
+var byKey = func() map[*Sheet]map[string]*Column {
+	all := map[*Sheet]map[string]*Column{}
+	for _, s := range Sheets {
+		all[s] = map[string]*Column{}
+		for _, c := range s.Columns {
+			all[s][key(c.Heading)] = c
+		}
+	}
+	return all
+}()
+
 // headings finds the columns of a sheet that a row names; the first of two equal ones.
 func headings(s *Sheet, row *gridRow) map[string]*head {
-	found := map[string]*head{}
+	var found map[string]*head
 	for i := range row.cells {
 		if row.cells[i].kind != text {
 			continue
 		}
 		name, _ := splitHeading(row.cells[i].text)
-		for _, c := range s.Columns {
-			if key(c.Heading) == key(name) && found[c.Heading] == nil {
-				found[c.Heading] = &head{col: int(row.cells[i].col), column: c}
+		if c := byKey[s][key(name)]; c != nil && found[c.Heading] == nil {
+			if found == nil {
+				found = map[string]*head{}
 			}
+			found[c.Heading] = &head{col: int(row.cells[i].col), column: c}
 		}
 	}
 	return found
@@ -174,10 +187,8 @@ func (r *reader) headings(t *table, top *gridRow) (own map[int]bool) {
 			continue
 		}
 		var h *head
-		for _, c := range t.sheet.Columns {
-			if key(c.Heading) == key(name) {
-				h = t.place[c.Heading]
-			}
+		if c := byKey[t.sheet][key(name)]; c != nil {
+			h = t.place[c.Heading]
 		}
 		switch {
 		case h == nil:
@@ -409,6 +420,9 @@ func (l *line) remark(level cell.Level, heading, typed string, s saying, args ..
 
 // note keeps a value for the input echo.
 func (l *line) note(heading, typed, used, why string) {
+	if l.readings == nil {
+		l.readings = make([]cell.Reading, 0, len(l.row.cells)+2) // and about two defaults
+	}
 	l.readings = append(l.readings, cell.Reading{At: l.at(heading), Column: heading, Typed: typed, Used: used, Why: why})
 }
 
