@@ -30,9 +30,11 @@ func solve(t testing.TB, shape *model.Shape, size model.Size, startC float64, st
 // dense is a course read every 2 s, for an independent judgement by straight lines.
 type dense struct{ t, c []float64 }
 
-func read(h *model.History, p model.Place) dense {
+func read(h *model.History, p model.Place) dense { return readEvery(h, p, 2) }
+
+func readEvery(h *model.History, p model.Place, s float64) dense {
 	var d dense
-	for x := 0.0; x < h.EndS(); x += 2 {
+	for x := 0.0; x < h.EndS(); x += s {
 		d.t = append(d.t, x)
 	}
 	d.t = append(d.t, h.EndS())
@@ -231,6 +233,101 @@ func TestPredictedSlabs(t *testing.T) {
 			check("lethality", Limit{Kind: Lethality, Stages: []*model.Stage{model.Cook}, FromC: c(55), ReferenceC: c(70), ZK: c(7.5), TimeS: min_(2)}, true,
 				func(d dense) float64 { return d.kill(55, 70, 7.5, 0, cookEnd) })
 		}
+	}
+}
+
+// TestPredictedShapes compares judgements of other shapes with the least favourable of many places read independently, and
+// their margins with limits moved by as much.
+func TestPredictedShapes(t *testing.T) {
+	steps := []model.Step{filmStep(model.Cook, 80, 120, 30), filmStep(model.Rest, 12, 21, 7), filmStep(model.Cool, 300, 2, 22)}
+	tray := filmStep(model.Cook, 80, 120, 30)
+	lower := 120.0
+	tray.Faces = []model.FaceExposure{{Face: model.Underside, Exposure: model.Exposure{Surface: model.Film, FilmW: &lower, Medium: model.Course{TimesS: []float64{0}, C: []float64{95}}}}}
+	onTray := []model.Step{tray, steps[1], steps[2]}
+	for _, x := range []struct {
+		name   string
+		shape  *model.Shape
+		size   model.Size
+		steps  []model.Step
+		extent model.Place // half sizes
+	}{
+		{"sphere", model.Sphere, model.Size{DiameterM: 0.07}, steps, model.Place{UpM: 0.035}},
+		{"slab on a tray", model.Slab, model.Size{ThicknessM: 0.05}, onTray, model.Place{UpM: 0.025}},
+		{"short cylinder", model.ShortCylinder, model.Size{DiameterM: 0.07, LengthM: 0.09}, steps, model.Place{UpM: 0.045, AcrossM: 0.035}},
+		{"brick", model.Brick, model.Size{ThicknessM: 0.05, WidthM: 0.08, LengthM: 0.13}, steps, model.Place{UpM: 0.025, AcrossM: 0.04, AlongM: 0.065}},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			h := solve(t, x.shape, x.size, 6, x.steps...)
+			var ds []dense
+			grid := func(half float64, n int) []float64 {
+				if half == 0 {
+					return []float64{0}
+				}
+				var at []float64
+				for k := 0; k <= n; k++ {
+					at = append(at, half*float64(k)/float64(n))
+				}
+				return at
+			}
+			ups := grid(x.extent.UpM, 8)
+			for _, u := range ups[1:] {
+				ups = append(ups, -u)
+			}
+			for _, u := range ups {
+				for _, a := range grid(x.extent.AcrossM, 5) {
+					for _, l := range grid(x.extent.AlongM, 4) {
+						ds = append(ds, readEvery(h, model.Place{UpM: u, AcrossM: a, AlongM: l}, 15))
+					}
+				}
+			}
+			cookEnd, end := h.Spans[0].EndS, h.EndS()
+			for i, l := range sixLimits() {
+				if l.Kind == HoldTable {
+					continue
+				}
+				f := one(t, l, h)
+				want := math.NaN()
+				for _, d := range ds {
+					v := 0.0
+					switch l.Name {
+					case "hold":
+						v, _ = d.inside(*l.FromC, 1e6, 0, cookEnd)
+					case "lethality":
+						v = d.kill(*l.FromC, 70, 7.5, 0, cookEnd)
+					case "cool":
+						v, _ = d.fall(*l.FromC, *l.ToC, math.NaN(), 0, end)
+					case "cool end":
+						v, _ = d.fall(0, *l.ToC, cookEnd, 0, end)
+					case "band":
+						v, _ = d.inside(*l.FromC, *l.ToC, 0, end)
+					}
+					if least := i < 3; math.IsNaN(want) || least && v < want || !least && v > want {
+						want = v
+					}
+				}
+				closeTo(t, l.Name, f.Value, want, math.Max(0.15, 0.01*math.Abs(want)))
+				if f.MarginK == nil {
+					continue
+				}
+				for _, side := range []float64{-0.05, 0.05} { // just inside and just beyond the margin
+					m := l
+					moved := func(p *float64, by float64) *float64 { x := *p + by; return &x }
+					switch l.Kind {
+					case Hold:
+						m.FromC = moved(l.FromC, *f.MarginK+side)
+					case Lethality:
+						m.ReferenceC = moved(l.ReferenceC, *f.MarginK+side)
+					case CoolWithin:
+						m.ToC = moved(l.ToC, -*f.MarginK-side)
+					case Band:
+						m.FromC = moved(l.FromC, -*f.MarginK-side)
+					}
+					if got := one(t, m, h); (got.Verdict == Met) != (side < 0) {
+						t.Errorf("%s: margin %g K, moved by %+.2f more: %v", l.Name, *f.MarginK, side, got.Verdict)
+					}
+				}
+			}
+		})
 	}
 }
 

@@ -132,10 +132,10 @@ func degrees(c float64, up int) string { return round(c, 1, up) + " °C" }
 
 // kelvinUp writes a difference, rounded up to two significant figures.
 func kelvinUp(k float64) string {
-	d := 2
-	if k != 0 {
-		d = max(0, 1-int(math.Floor(math.Log10(math.Abs(k)))))
+	if math.Abs(k) < 1e-6 {
+		return "0 K"
 	}
+	d := max(0, 1-int(math.Floor(math.Log10(math.Abs(k)))))
 	return round(k, d, 1) + " K"
 }
 
