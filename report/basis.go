@@ -35,15 +35,18 @@ func (x *sheet) basis() {
 	}
 	d.text(say("known note"))
 	var rows [][]string
-	for _, k := range h.Known {
+	for i, k := range h.Known {
 		ok := say("known bad")
 		if k.OK {
 			ok = say("known good")
 		}
-		rows = append(rows, []string{k.Name, k.Source, significant(k.Expected) + " " + k.Unit, significant(k.Got) + " " + k.Unit, "± " + significant(k.Allowance) + " " + k.Unit, ok})
+		if i == 0 || k.Source != h.Known[i-1].Source {
+			rows = append(rows, []string{say("known source", k.Source)})
+		}
+		rows = append(rows, []string{k.Name, significant(k.Expected) + " " + k.Unit, significant(k.Got) + " " + k.Unit, "± " + significant(k.Allowance) + " " + k.Unit, ok})
 	}
-	d.table([]col{{title: say("col case"), wide: 44, bold: true}, {title: say("col source"), wide: 48}, {title: say("col expected"), wide: 24}, {title: say("col got"), wide: 24},
-		{title: say("col allowance"), wide: 22}, {title: say("col within"), wide: 18}}, rows, small)
+	d.grouped([]col{{title: say("col case"), wide: 66}, {title: say("col expected"), wide: 32}, {title: say("col got"), wide: 32},
+		{title: say("col allowance"), wide: 32}, {title: say("col within"), wide: 18}}, rows, small, func(i int) bool { return i+1 < len(rows) && len(rows[i+1]) == 1 })
 }
 
 // significant writes a number with about six digits.
@@ -138,7 +141,7 @@ func (x *sheet) spanFactors(sp *model.Span, add func(a, b, c string)) {
 		used := say("film", plain(f.FilmW, 2, nearest))
 		if math.IsInf(f.FilmW, 1) {
 			used = say("film held")
-		} else if f.TotalW != f.FilmW && f.TotalW > 0 {
+		} else if f.TotalW > 0 && plain(f.TotalW, 2, nearest) != plain(f.FilmW, 2, nearest) {
 			used += say("film total", plain(f.TotalW, 2, nearest))
 		}
 		source := f.Source
@@ -148,7 +151,7 @@ func (x *sheet) spanFactors(sp *model.Span, add func(a, b, c string)) {
 		add(what+face, used, source)
 	}
 	if pr := sp.Props; pr.KWmK > 0 && x.p.Product.Food != nil {
-		add(what, say("props", plain(pr.KWmK, 4, nearest), plain(pr.RhoKgM3, 1, nearest), plain(pr.CJkgK, 0, nearest), x.propsAt(sp)), x.p.Product.Food.Source)
+		add(what, say("props", plain(pr.KWmK, 4, nearest), plain(pr.RhoKgM3, 1, nearest), plain(pr.CJkgK, 0, nearest), x.propsAt(sp)), say("props source"))
 	}
 	if sp.MediumFromC != nil && sp.MediumToC != nil {
 		add(what, say("medium raised", h.stated(*sp.MediumFromC), h.stated(*sp.MediumToC)), say("medium raised why"))
@@ -238,18 +241,23 @@ func (x *sheet) readings() {
 	}
 	d.text(say("input note"))
 	var rows [][]string
-	for _, r := range x.p.Readings {
-		typed := r.Typed
+	rs := x.p.Readings
+	for _, r := range rs {
+		typed, used := r.Typed, r.Used
 		if typed == "" {
 			typed = say("input default")
+		} else if used == typed {
+			used = say("input same")
 		}
-		rows = append(rows, []string{r.At.String(), r.Column, typed, r.Used, r.Why})
+		rows = append(rows, []string{r.At.String(), r.Column, typed, joined(used, r.Why)})
 	}
-	d.table([]col{{title: say("col cell"), wide: 30}, {title: say("col column"), wide: 42}, {title: say("col typed"), wide: 40}, {title: say("col used"), wide: 34},
-		{title: say("col why"), wide: frameWide - 146}}, rows, small)
+	d.grouped([]col{{title: say("col cell"), wide: 25}, {title: say("col column"), wide: 39}, {title: say("col typed"), wide: 66}, {title: say("col used"), wide: 50}}, rows, small,
+		func(i int) bool {
+			return i+1 < len(rs) && (rs[i].At.Sheet != rs[i+1].At.Sheet || rs[i].At.Row != rs[i+1].At.Row)
+		})
 }
 
-// changeKeys are the reasons to look at the process again, under "change " in words.
+// changeKeys are the reasons to look again, under "change " in words.
 var changeKeys = []string{"recipe", "size", "supplier", "equipment", "load", "setting", "limit", "measured", "deviation", "organism", "year"}
 
 // changes are the reasons to look at the process again, with boxes to tick.

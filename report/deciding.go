@@ -77,6 +77,9 @@ func (p *Product) decides() *deciding {
 	if f != nil && f.Place != nil {
 		d.place, d.placeName = *f.Place, f.PlaceName
 	}
+	if p.Product.Shape == model.Stirred {
+		d.placeName = say("anywhere")
+	}
 	if d.placeName == "" || d.placeName == "every point" {
 		d.placeName = placeWords(p.Product.Shape, d.place)
 	}

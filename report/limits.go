@@ -215,6 +215,17 @@ func (h *Head) asks(l *rules.Limit) string {
 	return l.Kind.Help
 }
 
+// plainly is asks for whoever cooks: without words of theory.
+func (h *Head) plainly(l *rules.Limit) string {
+	if l.Kind == nil || l.Kind.Name != "lethality" {
+		return h.asks(l)
+	}
+	if l.Logs != nil {
+		return say("plainly logs", h.typed(l, "Reference temperature", l.ReferenceC))
+	}
+	return say("plainly equivalent", minutes(l, "Time", l.TimeS), h.typed(l, "Reference temperature", l.ReferenceC))
+}
+
 // bare tells whether a limit lacks a part of its citation.
 func bare(l *rules.Limit) bool {
 	return strings.TrimSpace(l.Code) == "" || strings.TrimSpace(l.Clause) == "" || strings.TrimSpace(l.Edition) == ""

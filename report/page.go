@@ -206,25 +206,36 @@ type col struct {
 
 const cellPad = 1.2 // mm beside the text of a cell
 
-// table writes rows with a header that repeats on every page. A row is split only if it is taller than a page.
+// table writes rows with a header that repeats on every page. A row is split only if it is taller than a page. A row of one cell
+// in a table of several columns is a title over the rows below it.
 func (d *doc) table(cols []col, rows [][]string, size float64) {
+	d.grouped(cols, rows, size, func(int) bool { return true })
+}
+
+// grouped is a table with a line only below the rows that end a group.
+func (d *doc) grouped(cols []col, rows [][]string, size float64, ends func(row int) bool) {
 	titles := make([][]string, len(cols))
 	for i, c := range cols {
 		titles[i] = wrap(d.clean(c.title), c.wide-2*cellPad, size, true)
 	}
 	headed := -1
-	header := func() {
-		if len(cols) > 0 {
+	start := func(h float64) { // room for h mm, below a header
+		d.need(h + btof(headed < 0)*2*height(size))
+		if headed != d.pdf.PageNo() {
 			d.row(cols, titles, size, true)
 			d.rule(d.left, d.left+total(cols), d.y, 1)
+			headed = d.pdf.PageNo()
 		}
-		headed = d.pdf.PageNo()
 	}
-	d.need(3 * height(size))
-	for _, r := range rows {
-		lines := make([][]string, len(cols))
+	most := int((bottomY - topY - 20) / height(size))
+	for k, r := range rows {
+		over := cols
+		if len(r) == 1 && len(cols) > 1 {
+			over = []col{{wide: total(cols), bold: true}}
+		}
+		lines := make([][]string, len(over))
 		n := 1
-		for i, c := range cols {
+		for i, c := range over {
 			s := ""
 			if i < len(r) {
 				s = r[i]
@@ -232,25 +243,23 @@ func (d *doc) table(cols []col, rows [][]string, size float64) {
 			lines[i] = wrap(d.clean(s), c.wide-2*cellPad, size, c.bold)
 			n = max(n, len(lines[i]))
 		}
-		most := int((bottomY - topY - 20) / height(size))
 		for n > 0 {
 			part := min(n, most)
-			d.need(float64(part)*height(size) + 1 + btof(headed < 0)*2*height(size))
-			if headed != d.pdf.PageNo() {
-				header()
-			}
-			chunk := make([][]string, len(cols))
+			start(float64(part)*height(size) + 1 + btof(len(over) < len(cols))*2*height(size)) // a title stays with a row
+			chunk := make([][]string, len(over))
 			for i := range lines {
-				k := min(part, len(lines[i]))
-				chunk[i], lines[i] = lines[i][:k], lines[i][k:]
+				q := min(part, len(lines[i]))
+				chunk[i], lines[i] = lines[i][:q], lines[i][q:]
 			}
-			d.row(cols, chunk, size, false)
-			d.rule(d.left, d.left+total(cols), d.y, 0.7)
+			d.row(over, chunk, size, false)
 			n -= part
+		}
+		if ends(k) || k == len(rows)-1 {
+			d.rule(d.left, d.left+total(cols), d.y, 0.7)
 		}
 	}
 	if len(rows) == 0 {
-		header()
+		start(0)
 	}
 	d.y += 2
 }
@@ -284,25 +293,38 @@ func btof(b bool) float64 { return float64(btoi(b)) }
 
 // pairs writes names and values in two columns, leaving out blank values.
 func (d *doc) pairs(rows [][2]string, wide float64) {
-	var r [][]string
-	for _, p := range rows {
-		if p[1] != "" {
-			r = append(r, []string{p[0], p[1]})
+	for _, line := range rows {
+		if line[1] == "" {
+			continue
 		}
-	}
-	cols := []col{{wide: wide, bold: true}, {wide: frameWide - wide}}
-	for _, line := range r {
-		a := wrap(d.clean(line[0]), cols[0].wide-2*cellPad, small, true)
-		b := wrap(d.clean(line[1]), cols[1].wide-2*cellPad, small, false)
-		d.need(float64(min(len(b), 40))*height(small) + 1)
+		a, b := d.pair(line, wide)
+		cols := []col{{wide: wide, bold: true}, {wide: frameWide - wide}}
 		for len(b) > 40 {
+			d.need(40*height(small) + 1)
 			d.row(cols, [][]string{a, b[:40]}, small, false)
 			a, b = nil, b[40:]
-			d.need(float64(min(len(b), 40))*height(small) + 1)
 		}
+		d.need(float64(max(len(a), len(b)))*height(small) + 1)
 		d.row(cols, [][]string{a, b}, small, false)
 	}
 	d.y += 1.5
+}
+
+// pair is a name and a value as lines.
+func (d *doc) pair(line [2]string, wide float64) (name, value []string) {
+	return wrap(d.clean(line[0]), wide-2*cellPad, small, true), wrap(d.clean(line[1]), frameWide-wide-2*cellPad, small, false)
+}
+
+// pairsHeight is how high pairs will be, mm.
+func (d *doc) pairsHeight(rows [][2]string, wide float64) float64 {
+	h := 1.5
+	for _, line := range rows {
+		if line[1] != "" {
+			a, b := d.pair(line, wide)
+			h += float64(max(len(a), len(b)))*height(small) + 1
+		}
+	}
+	return h
 }
 
 // boxed writes paragraphs in a frame.

@@ -195,7 +195,7 @@ func (x *sheet) checks() []string {
 		if finite(f.AtS) {
 			when = say("check at", duration(*f.AtS, nearest), x.stepAt(*f.AtS))
 		}
-		out = append(out, say("check", when, place, x.head.asks(f.Limit)))
+		out = append(out, say("check", when, place, x.head.plainly(f.Limit)))
 	}
 	if len(out) == 0 {
 		out = append(out, say("check nothing"))
@@ -433,7 +433,6 @@ func (x *sheet) card(f *rules.Finding) {
 	if f.LowConductivity {
 		title += say("card low")
 	}
-	d.heading(say("card title", title, verdictWord(f.Verdict)), 2, 24)
 	kind := ""
 	if l.Kind != nil {
 		kind = l.Kind.Name
@@ -443,14 +442,14 @@ func (x *sheet) card(f *rules.Finding) {
 		value = say("card value", value, h.quantity(f, f.Required, true))
 	}
 	where := f.PlaceName
-	if f.Place != nil && f.PlaceName != "" && f.PlaceName != placeWords(x.p.Product.Shape, *f.Place) {
-		where = say("card where", f.PlaceName, placeWords(x.p.Product.Shape, *f.Place))
+	if f.Place != nil && f.PlaceName != "" && f.PlaceName != x.where(*f.Place) {
+		where = say("card where", f.PlaceName, x.where(*f.Place))
 	}
 	when := ""
 	if finite(f.AtS) {
 		when = say("card when", duration(*f.AtS, nearest), x.stepAt(*f.AtS))
 	}
-	d.pairs([][2]string{
+	rows := [][2]string{
 		{say("card asks"), say("card asks line", kind, h.asks(l), stages(l), whereAsked(l), f.Level)},
 		{say("card found"), strings.Trim(value+"; "+f.Why, "; ")},
 		{say("card margin"), h.room(f)},
@@ -460,7 +459,9 @@ func (x *sheet) card(f *rules.Finding) {
 		{say("card citation"), x.cited(l)},
 		{say("card hazard"), joined(prefixed("CCP ", l.CCP), l.Hazard, l.Status, l.Note)},
 		{say("card cells"), refs(f.Cells)},
-	}, 36)
+	}
+	d.heading(say("card title", title, verdictWord(f.Verdict)), 2, min(d.pairsHeight(rows, 36)+1, 150))
+	d.pairs(rows, 36)
 }
 
 // whereAsked is the place that the limit is about, as typed.
@@ -616,13 +617,56 @@ func sampleAt(times []float64, t float64) int {
 	return -1
 }
 
+// where says where a place lies, in the way of the findings: from the underside or the centre, or on which face.
+func (x *sheet) where(at model.Place) string {
+	shape, z := x.p.Product.Shape, x.p.Product.Size
+	if shape == model.Stirred {
+		return say("anywhere")
+	}
+	if math.Abs(at.UpM) < 1e-5 && math.Abs(at.AcrossM) < 1e-5 && math.Abs(at.AlongM) < 1e-5 {
+		return say("centre")
+	}
+	half, across, along := z.ThicknessM/2, z.WidthM/2, z.LengthM/2
+	switch shape {
+	case model.Cylinder, model.Sphere:
+		if at.UpM > z.DiameterM/2-1e-6 {
+			return say("surface")
+		}
+		return say("from centre", decimal(at.UpM*1000, 0, nearest))
+	case model.ShortCylinder:
+		half, across = z.LengthM/2, z.DiameterM/2
+	}
+	s := say("above underside", decimal((at.UpM+half)*1000, 0, nearest))
+	switch {
+	case math.Abs(at.UpM-half) < 1e-6:
+		s = model.Top.Name
+	case math.Abs(at.UpM+half) < 1e-6:
+		s = model.Underside.Name
+	case math.Abs(at.UpM) < 1e-5:
+		s = say("half way up")
+	}
+	switch {
+	case across > 0 && math.Abs(math.Abs(at.AcrossM)-across) < 1e-6:
+		s += say("at the side")
+	case math.Abs(at.AcrossM) > 5e-4:
+		s += say("mm across", decimal(math.Abs(at.AcrossM)*1000, 0, nearest))
+	}
+	switch {
+	case shape == model.Brick && math.Abs(math.Abs(at.AlongM)-along) < 1e-6:
+		s += say("at the end")
+	case math.Abs(at.AlongM) > 5e-4:
+		s += say("mm along", decimal(math.Abs(at.AlongM)*1000, 0, nearest))
+	}
+	return s
+}
+
 // extremePlace words where the coldest or hottest place is at a sample; a hundredth of a degree from the centre is the centre,
 // for a food of one temperature has no place of its own.
 func (x *sheet) extremePlace(i int, c []float64, at []model.Place) string {
 	if pts := x.p.Samples.Points; len(pts) > 0 && i < len(pts[0]) && math.Abs(pts[0][i]-c[i]) < 0.01 {
-		return placeWords(x.p.Product.Shape, model.Place{})
+		return x.where(model.Place{})
 	}
-	return placeWords(x.p.Product.Shape, at[i])
+	return x.where(at[i])
 }
 
 // moves says in words how the coldest and the hottest place move.
