@@ -21,7 +21,7 @@ const (
 	helpRow    = 1
 	headRow    = 2
 	firstRow   = 3   // of the data
-	ruledRows  = 30  // rows that are ruled, at least
+	ruledRows  = 18  // rows that are ruled, at least
 	listedRows = 500 // rows that have drop-down lists
 	listChars  = 255 // the longest drop-down list that a workbook may hold, in characters (ECMA-376 part 1, 18.3.1.32, formula1 as spreadsheets keep it)
 )
@@ -126,7 +126,7 @@ func (l blankLook) style(figure bool) *excelize.Style {
 		s.Alignment.WrapText = !figure
 	}
 	if figure {
-		s.Alignment.Horizontal = "right"
+		s.Alignment.Horizontal, s.Alignment.Indent = "right", 1
 	}
 	if l.ruled {
 		for _, side := range []string{"left", "right", "top", "bottom"} {
@@ -173,7 +173,10 @@ func (k *blanks) sheet(s *Sheet, rows []map[string]string) error {
 			return err
 		}
 	}
-	return k.page(s, last, total)
+	if err := k.heights(s, rows); err != nil {
+		return err
+	}
+	return k.page(s, total)
 }
 
 // column writes a column: its heading, note, list and cells. It gives its width, in characters.
@@ -220,6 +223,27 @@ func (k *blanks) column(s *Sheet, n int, c *Column, rows []map[string]string, la
 	return wide, nil
 }
 
+// lineHeight is the height of a line of 10 pt text, in points.
+const lineHeight = 13.5
+
+// heights makes rows whose words take several lines as high as these need: not every spreadsheet program does so by itself.
+func (k *blanks) heights(s *Sheet, rows []map[string]string) error {
+	for i, row := range rows {
+		lines := 1
+		for _, c := range s.Columns {
+			if c.Quantity == nil {
+				lines = max(lines, int(math.Ceil(1.08*float64(utf8.RuneCountInString(row[c.Heading]))/c.width(rows))))
+			}
+		}
+		if lines > 1 {
+			if err := k.f.SetRowHeight(s.Name, firstRow+i, float64(lines)*lineHeight+2); err != nil {
+				return err
+			}
+		}
+	}
+	return nil
+}
+
 // cell writes a value: a bare number of a column of numbers as a number, everything else as text, as a person types it.
 func (k *blanks) cell(sheet, at string, c *Column, v string) error {
 	if c.Quantity != nil {
@@ -236,6 +260,7 @@ func (c *Column) width(rows []map[string]string) float64 {
 	for _, w := range strings.Fields(c.Title()) {
 		n = max(n, utf8.RuneCountInString(w)+2)
 	}
+	n = max(n, utf8.RuneCountInString(c.Title())/2+3) // a heading takes at most three lines
 	for _, w := range c.Choices {
 		n = max(n, min(utf8.RuneCountInString(w)+3, 24))
 	}
@@ -398,7 +423,7 @@ func (k *blanks) planLists(rows []map[string]string) error {
 const pageChars = 190
 
 // page sets how a sheet is shown and printed: frozen headings, landscape, headings on each page.
-func (k *blanks) page(s *Sheet, last int, total float64) error {
+func (k *blanks) page(s *Sheet, total float64) error {
 	f := k.f
 	yes, landscape, paper := true, "landscape", 9 // 9 = A4
 	across, down := int(math.Ceil(total/pageChars)), 0
@@ -426,10 +451,6 @@ func (k *blanks) page(s *Sheet, last int, total float64) error {
 		func() error {
 			return f.SetDefinedName(&excelize.DefinedName{Name: "_xlnm.Print_Titles", Scope: s.Name,
 				RefersTo: fmt.Sprintf("'%s'!$A:$A,'%s'!$%d:$%d", s.Name, s.Name, helpRow, headRow)})
-		},
-		func() error {
-			return f.SetDefinedName(&excelize.DefinedName{Name: "_xlnm.Print_Area", Scope: s.Name,
-				RefersTo: fmt.Sprintf("'%s'!$A$1:$%s$%d", s.Name, cell.ColumnName(len(s.Columns)), last)})
 		},
 	} {
 		if err := do(); err != nil {
