@@ -345,13 +345,10 @@ func (cs *copySheet) add(c *copier, rows []map[string]string) error {
 	}
 	for i, r := range rows {
 		n := cs.last + 1 + i
-		for heading, v := range r {
-			h := cs.heads[heading]
+		for _, col := range cs.Columns {
+			h, v := cs.heads[col.Heading], r[col.Heading]
 			if h == nil {
-				if v == "" {
-					continue
-				}
-				return fmt.Errorf("%q is not a column of it", heading)
+				continue
 			}
 			name := cell.ColumnName(h.col)
 			if styled {
@@ -517,11 +514,42 @@ func contents(data []byte) (map[string]map[string]int, error) {
 		if !strings.HasSuffix(n, ".xml") && !strings.HasSuffix(n, ".rels") {
 			continue
 		}
-		if err := m.part(f, func(r io.Reader) error {
-			return elements(r, func(_ *xml.Decoder, e xml.StartElement) error { count[e.Name.Local]++; return nil }, nil)
-		}); err != nil {
+		if err := m.part(f, func(r io.Reader) error { return countElements(r, count) }); err != nil {
 			return nil, err
 		}
 	}
 	return out, nil
+}
+
+// countElements counts the elements of a part by name; one without attributes, text and elements says nothing and is left out.
+func countElements(r io.Reader, count map[string]int) error {
+	d := xml.NewDecoder(r)
+	open := "" // the element just begun, if nothing of it was seen yet
+	for {
+		t, err := d.Token()
+		if err == io.EOF {
+			return nil
+		}
+		if err != nil {
+			return err
+		}
+		switch t := t.(type) {
+		case xml.StartElement:
+			if open != "" {
+				count[open]++
+			}
+			open = t.Name.Local
+			if len(t.Attr) > 0 {
+				count[open]++
+				open = ""
+			}
+		case xml.CharData:
+			if open != "" && len(bytes.TrimSpace(t)) > 0 {
+				count[open]++
+				open = ""
+			}
+		case xml.EndElement:
+			open = ""
+		}
+	}
 }

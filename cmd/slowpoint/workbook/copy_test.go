@@ -356,7 +356,88 @@ func TestCopyTellsLoss(t *testing.T) {
 	}
 }
 
-// edited gives a workbook with a text of one part replaced.
+// TestCopyKeeps: charts, notes, and macros (which are never run) are in the copy, and nothing is told as lost.
+func TestCopyKeeps(t *testing.T) {
+	w := everyStage()
+	w["Limits"] = [][]any{{"Limit", "Rule", "Applies to"}, {"Ours", "stated", "all"}}
+	path := w.save(t, func(f *excelize.File) {
+		if err := f.AddChart("Limits", "E5", &excelize.Chart{Type: excelize.Col, Series: []excelize.ChartSeries{{Name: "a", Values: "Steps!$D$2:$D$6"}}}); err != nil {
+			t.Fatal(err)
+		}
+		if err := f.AddComment("Limits", excelize.Comment{Cell: "A2", Text: "ask the chef"}); err != nil {
+			t.Fatal(err)
+		}
+	})
+	data, err := os.ReadFile(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	macros := edited(t, data, "[Content_Types].xml", "spreadsheetml.sheet.main+xml", "x-not-yet")
+	macros = edited(t, macros, "[Content_Types].xml", "application/vnd.openxmlformats-officedocument.x-not-yet", "application/vnd.ms-excel.sheet.macroEnabled.main+xml")
+	macros = edited(t, macros, "xl/_rels/workbook.xml.rels", "</Relationships>",
+		`<Relationship Id="rId99" Type="http://schemas.microsoft.com/office/2006/relationships/vbaProject" Target="vbaProject.bin"/></Relationships>`)
+	macros = withPart(t, macros, "xl/vbaProject.bin", "macros")
+	if err := os.WriteFile(path, macros, 0o644); err != nil {
+		t.Fatal(err)
+	}
+	_, lacks, out := copied(t, rowsOf(t, "UK-P70"), path)
+	if len(lacks) > 0 {
+		t.Errorf("told as lost: %v", lacks)
+	}
+	now, err := os.ReadFile(out)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for part, holds := range map[string]string{"xl/vbaProject.bin": "macros", "xl/charts/chart1.xml": "Steps!$D$2:$D$6", "xl/comments1.xml": "ask the chef", "[Content_Types].xml": "macroEnabled.main+xml"} {
+		edited(t, now, part, holds, "") // fails where the part does not hold it
+	}
+}
+
+// TestCopySameBytes: the same rows and plan give the same bytes.
+func TestCopySameBytes(t *testing.T) {
+	path := everyStage().save(t, nil)
+	var first bytes.Buffer
+	for i := range 4 {
+		var b bytes.Buffer
+		if _, err := CopyRows(rowsOf(t, "UK-FSA-VPMAP", "UK-ACMSF-burger-70"), path, &b); err != nil {
+			t.Fatal(err)
+		}
+		if i == 0 {
+			first = b
+		} else if !bytes.Equal(first.Bytes(), b.Bytes()) {
+			t.Fatal("two copies differ")
+		}
+	}
+}
+
+// withPart gives a workbook with one more part.
+func withPart(t *testing.T, data []byte, part, holds string) []byte {
+	t.Helper()
+	z, err := zip.NewReader(bytes.NewReader(data), int64(len(data)))
+	if err != nil {
+		t.Fatal(err)
+	}
+	var b bytes.Buffer
+	w := zip.NewWriter(&b)
+	for _, f := range z.File {
+		if err := w.Copy(f); err != nil {
+			t.Fatal(err)
+		}
+	}
+	o, err := w.Create(part)
+	if err == nil {
+		_, err = io.WriteString(o, holds)
+	}
+	if err == nil {
+		err = w.Close()
+	}
+	if err != nil {
+		t.Fatal(err)
+	}
+	return b.Bytes()
+}
+
+// edited gives a workbook with a text of one part replaced; it fails where the part does not hold the text.
 func edited(t *testing.T, data []byte, part, from, to string) []byte {
 	t.Helper()
 	z, err := zip.NewReader(bytes.NewReader(data), int64(len(data)))
