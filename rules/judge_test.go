@@ -360,7 +360,7 @@ func TestStricter(t *testing.T) {
 			rt.Fatalf("%s: %v with a margin of %g K: %s", l.Kind.Name, a.Verdict, *a.MarginK, a.Why)
 		}
 		if math.Abs(*a.MarginK) > 100 || l.Kind == Outside && *a.MarginK < 0.02-(*l.ToC-*l.FromC)/2 ||
-			l.Kind == Falling && *a.MarginK > *l.AllowanceK-0.02 {
+			l.Kind == Falling && *a.MarginK > *l.AllowanceK-0.02 || l.Kind == CoolWithin && l.FromC != nil && *a.MarginK < *l.ToC-*l.FromC+0.02 {
 			return // nothing would be left of the limit
 		}
 		if b := judged(stricter(*a.MarginK-0.01), h); b.Verdict != Met && b.Verdict != NotApplicable && len(b.Cautions) == 0 {

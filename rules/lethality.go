@@ -67,6 +67,7 @@ func judgeLethality(v *view) Finding {
 	if l.ZAboveK == nil || *l.ZAboveK == *l.ZK {
 		q.room = func(p path) float64 { // moving the reference temperature by d divides the whole by 10^(d/z)
 			best, k := 0.0, v.killer(tilt{})
+			p.at = nil
 			for _, ivs := range heats {
 				best = math.Max(best, k.over(p, ivs))
 			}

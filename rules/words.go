@@ -217,7 +217,7 @@ func (l *Limit) startWords() string {
 	case c.End != nil:
 		return "the end of " + c.End.Name
 	case c.AtC != nil:
-		return l.figure("Clock starts", exactly(*c.AtC, "°C"))
+		return strings.TrimPrefix(l.figure("Clock starts", exactly(*c.AtC, "°C")), "crossing of ")
 	case l.FromC != nil:
 		return l.figure("From", exactly(*l.FromC, "°C"))
 	}
