@@ -210,6 +210,22 @@ func judgeProduct(t *testing.T, p *Plan, pr *Product) rules.Judgement {
 	return j
 }
 
+// TestDemoHeadings: the demo's files have the headings and units of the blank workbook, into which their cells go as they stand.
+func TestDemoHeadings(t *testing.T) {
+	grids, _, err := demoGrids()
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, g := range grids {
+		for _, e := range g.rows[0].cells {
+			name, _ := splitHeading(e.text)
+			if c := SheetNamed(g.name).Column(name); c == nil || c.Title() != e.text {
+				t.Errorf("demo/%s.csv: %q is not a heading of the blank workbook", g.name, e.text)
+			}
+		}
+	}
+}
+
 // TestDemoSaysInvented: nobody can take the demo for a real kitchen.
 func TestDemoSaysInvented(t *testing.T) {
 	p, err := ReadDemo()

@@ -88,7 +88,7 @@ func copyRows(rows Rows, old []byte) (out []byte, notCarried []string, err error
 
 // written gives a copy of the rows, each once in Tables and Groups, with the decimal sign of the plan.
 func (rows Rows) written(grids []*grid, c *copier) (Rows, error) {
-	r := &reader{plan: &Plan{Columns: map[string]map[string]int{}}, formulas: map[cell.Ref]*formulas{}}
+	r := newReader(&Plan{})
 	if err := r.sheets(grids); err != nil {
 		return nil, err
 	}
@@ -344,28 +344,35 @@ func (cs *copySheet) add(c *copier, rows []map[string]string) error {
 		}
 	}
 	for i, r := range rows {
-		n := cs.last + 1 + i
-		for _, col := range cs.Columns {
-			h, v := cs.heads[col.Heading], r[col.Heading]
-			if h == nil {
-				continue
+		if err := cs.write(c, r, cs.last+1+i, styled); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// write writes one row, styled as the last one of the user's if there is one.
+func (cs *copySheet) write(c *copier, r map[string]string, n int, styled bool) error {
+	for _, col := range cs.Columns { // in order, for the same bytes
+		h, v := cs.heads[col.Heading], r[col.Heading]
+		if h == nil {
+			continue
+		}
+		name := cell.ColumnName(h.col)
+		if styled {
+			id, err := c.f.GetCellStyle(cs.name, name+strconv.Itoa(cs.last))
+			if err == nil && id > 0 {
+				err = c.f.SetCellStyle(cs.name, name+strconv.Itoa(n), name+strconv.Itoa(n), id)
 			}
-			name := cell.ColumnName(h.col)
-			if styled {
-				id, err := c.f.GetCellStyle(cs.name, name+strconv.Itoa(cs.last))
-				if err == nil && id > 0 {
-					err = c.f.SetCellStyle(cs.name, name+strconv.Itoa(n), name+strconv.Itoa(n), id)
-				}
-				if err != nil {
-					return err
-				}
-			}
-			if v == "" {
-				continue
-			}
-			if err := c.f.SetCellStr(cs.name, name+strconv.Itoa(n), v); err != nil {
+			if err != nil {
 				return err
 			}
+		}
+		if v == "" {
+			continue
+		}
+		if err := c.f.SetCellStr(cs.name, name+strconv.Itoa(n), v); err != nil {
+			return err
 		}
 	}
 	return nil

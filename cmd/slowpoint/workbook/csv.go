@@ -8,6 +8,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"io/fs"
 	"os"
 	"path/filepath"
 	"sort"
@@ -26,8 +27,11 @@ const (
 )
 
 // readFolder takes every .csv file of a folder as a sheet, in the order of their names, and the digest of them all.
-func readFolder(folder string) ([]*grid, string, error) {
-	list, err := os.ReadDir(folder)
+func readFolder(folder string) ([]*grid, string, error) { return readFiles(os.DirFS(folder), folder) }
+
+// readFiles does so for the files of a folder wherever it is kept; messages name it.
+func readFiles(files fs.FS, folder string) ([]*grid, string, error) {
+	list, err := fs.ReadDir(files, ".")
 	if err != nil {
 		return nil, "", fmt.Errorf("the folder %s cannot be read: %v", folder, reason(err))
 	}
@@ -40,12 +44,12 @@ func readFolder(folder string) ([]*grid, string, error) {
 			continue
 		}
 		path := filepath.Join(folder, f.Name())
-		if info, err := os.Stat(path); err == nil {
+		if info, err := fs.Stat(files, f.Name()); err == nil {
 			if total += info.Size(); total > mostBytes {
 				return nil, "", fmt.Errorf("the folder %s holds more than %d MB of CSV; divide the plan into several", folder, mostBytes>>20)
 			}
 		}
-		data, err := os.ReadFile(path)
+		data, err := fs.ReadFile(files, f.Name())
 		if err != nil {
 			return nil, "", fmt.Errorf("%s cannot be read: %v", path, reason(err))
 		}

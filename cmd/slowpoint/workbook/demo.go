@@ -1,14 +1,9 @@
 package workbook
 
 import (
-	"crypto/sha256"
 	"embed"
-	"encoding/hex"
 	"fmt"
 	"io/fs"
-	"strings"
-
-	"slowpoint/model/cell"
 )
 
 // demoFiles is the demo plan: an invented kitchen with invented recipes and measurements, and limits of published codes.
@@ -16,44 +11,28 @@ import (
 //go:embed demo/*.csv
 var demoFiles embed.FS
 
-// demoName is the demo plan's name in results.
+// demoName is what results call the demo plan.
 const demoName = "demo"
 
-// demoGrids reads the files of the demo plan in the order of their names, and the digest of them all as for a folder.
+// demoGrids reads the files of the demo plan.
 func demoGrids() ([]*grid, string, error) {
-	list, err := fs.ReadDir(demoFiles, "demo")
+	files, err := fs.Sub(demoFiles, "demo")
 	if err != nil {
 		return nil, "", err
 	}
-	sum := sha256.New()
-	var grids []*grid
-	for _, f := range list {
-		data, err := fs.ReadFile(demoFiles, "demo/"+f.Name())
-		if err != nil {
-			return nil, "", err
-		}
-		fmt.Fprintf(sum, "%s %d\n", f.Name(), len(data))
-		sum.Write(data)
-		grids = append(grids, csvGrid(strings.TrimSuffix(f.Name(), ".csv"), data))
-	}
-	return grids, hex.EncodeToString(sum.Sum(nil)), nil
+	return readFiles(files, demoName)
 }
 
-// ReadDemo reads the demo plan that is built in. It is read like a folder of CSV files.
+// ReadDemo reads the demo plan that is built in, as a folder of CSV files is read.
 func ReadDemo() (*Plan, error) {
 	grids, digest, err := demoGrids()
 	if err != nil {
 		return nil, err
 	}
-	r := &reader{plan: &Plan{Name: demoName, SHA256: digest, Columns: map[string]map[string]int{}}, formulas: map[cell.Ref]*formulas{}}
-	if err := r.sheets(grids); err != nil {
-		return nil, fmt.Errorf("%s: %w", demoName, err)
-	}
-	r.read()
-	return r.plan, nil
+	return understand(grids, &Plan{Name: demoName, SHA256: digest})
 }
 
-// demoRows gives the cells of the demo plan by sheet and heading without unit. Their headings carry the units of the blank workbook.
+// demoRows gives the cells of the demo plan by sheet and heading without unit. A test holds its headings to the units of the blank workbook.
 func demoRows() (map[string][]map[string]string, error) {
 	grids, _, err := demoGrids()
 	if err != nil {

@@ -47,13 +47,26 @@ func Read(name string) (*Plan, error) {
 			return nil, fmt.Errorf("%s: %w", name, err)
 		}
 	}
-	p := &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest, Columns: map[string]map[string]int{}}
-	r := &reader{plan: p, formulas: map[cell.Ref]*formulas{}, unread: map[string]cell.Errors{}}
-	if err := r.sheets(grids); err != nil {
+	p, err := understand(grids, &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest})
+	if err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)
+	}
+	return p, nil
+}
+
+// understand fills a plan, of which name and digest are known, from its sheets.
+func understand(grids []*grid, p *Plan) (*Plan, error) {
+	r := newReader(p)
+	if err := r.sheets(grids); err != nil {
+		return nil, err
 	}
 	r.read()
 	return p, nil
+}
+
+func newReader(p *Plan) *reader {
+	p.Columns = map[string]map[string]int{}
+	return &reader{plan: p, formulas: map[cell.Ref]*formulas{}, unread: map[string]cell.Errors{}}
 }
 
 // reader is a plan while it is read.
