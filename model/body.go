@@ -284,11 +284,8 @@ func (h *History) look() *Scan {
 	for i := range h.Spans {
 		sp := &h.Spans[i]
 		var knots []float64
-		for _, e := range append([]FaceExposure{{Exposure: sp.Step.Exposure}}, sp.Step.Faces...) {
-			every := 1 + len(e.Medium.TimesS)/mostKnots
-			for k := 0; k < len(e.Medium.TimesS); k += every {
-				knots = append(knots, e.Medium.TimesS[k])
-			}
+		for k, every := 0, 1+len(h.knots[i])/mostKnots; k < len(h.knots[i]); k += every {
+			knots = append(knots, h.knots[i][k])
 		}
 		times := stepTimes(sp.StartS, sp.EndS, h.settle, knots)
 		if i > 0 {

@@ -51,6 +51,7 @@ type History struct {
 	body   *body
 	field  field
 	hull   [][2]float64 // by span: the range of the food
+	knots  [][]float64  // by span: instants in it at which the slope of a medium changes
 	settle float64      // s after a change from which ErrorK holds
 }
 

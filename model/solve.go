@@ -364,6 +364,7 @@ func (s *solver) film(span *Span, meanC float64) *chainStep {
 
 // group finds or adds a medium and the instants at which it changes its slope.
 func (cs *chainStep) group(m Course, durS float64) int {
+	m = thinned(m, durS)
 	for g := range cs.media {
 		if sameCourse(&cs.media[g], &m) {
 			return g
@@ -379,6 +380,36 @@ func (cs *chainStep) group(m Course, durS float64) int {
 		cs.knots = rising(cs.knots)
 	}
 	return len(cs.media) - 1
+}
+
+// thinK is how far a course may be moved by leaving points out, K. No place in the food can move further.
+const thinK = 2e-4
+
+// thinned leaves out points of a course that lie within thinK of a straight line between those that stay, and what comes after
+// durS. Logged courses hold thousands of points on nearly straight lines, and each costs as much as a step.
+func thinned(m Course, durS float64) Course {
+	if len(m.TimesS) < 3 {
+		return m
+	}
+	out := Course{Name: m.Name, TimesS: []float64{m.TimesS[0]}, C: []float64{m.C[0]}}
+	from, low, high := 0, math.Inf(-1), math.Inf(1)
+	for i := 1; i < len(m.C); i++ {
+		slope := (m.C[i] - m.C[from]) / (m.TimesS[i] - m.TimesS[from])
+		if slope < low || slope > high {
+			from, low, high = i-1, math.Inf(-1), math.Inf(1)
+			out.TimesS, out.C = append(out.TimesS, m.TimesS[from]), append(out.C, m.C[from])
+		}
+		t := m.TimesS[i] - m.TimesS[from]
+		low = math.Max(low, (m.C[i]-thinK-m.C[from])/t)
+		high = math.Min(high, (m.C[i]+thinK-m.C[from])/t)
+		if m.TimesS[i] >= durS {
+			out.TimesS, out.C = append(out.TimesS, m.TimesS[i]), append(out.C, m.C[i])
+			return out
+		}
+	}
+	last := len(m.C) - 1
+	out.TimesS, out.C = append(out.TimesS, m.TimesS[last]), append(out.C, m.C[last])
+	return out
 }
 
 // meanC is the mean of a medium over a step.
@@ -526,6 +557,12 @@ func (s *solver) estimate(h *History, more int) {
 	}
 	swap(wide)
 	h.ErrorK = math.Max(worst/fewerWorse, 1e-5)
+	for _, cs := range s.chain {
+		if len(cs.knots) > 1 {
+			h.ErrorK += thinK
+			break
+		}
+	}
 }
 
 // fewerWorse is how many times larger the error of the second solution is, at least: two polynomials fewer on a half axis
@@ -589,6 +626,9 @@ func (s *solver) finish(h *History) {
 	}
 	h.HumidityPc = func(t float64) float64 { return humidityAt(spans, t) }
 	h.settle = s.settle
+	for _, cs := range s.chain {
+		h.knots = append(h.knots, cs.knots)
+	}
 	h.Method = s.method()
 }
 
