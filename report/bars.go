@@ -2,6 +2,7 @@ package report
 
 import (
 	"math"
+	"sort"
 
 	"slowpoint/rules"
 )
@@ -61,12 +62,20 @@ func (d *doc) marginBars(fs []*rules.Finding) {
 // scale is the least and the largest of the values, with zero between.
 type scale struct{ lo, hi float64 }
 
+// scaleOf takes the values as they are, but for those far beyond the others: their bars are cut.
 func scaleOf(fs []*rules.Finding, of func(*rules.Finding) *float64) scale {
 	var s scale
+	var sizes []float64
 	for _, f := range fs {
 		if v := of(f); finite(v) {
 			s.lo, s.hi = min(s.lo, *v), max(s.hi, *v)
+			sizes = append(sizes, math.Abs(*v))
 		}
+	}
+	if len(sizes) > 0 {
+		sort.Float64s(sizes)
+		most := 4 * sizes[len(sizes)/2]
+		s.lo, s.hi = max(s.lo, -most), min(s.hi, most)
 	}
 	if s.lo == s.hi {
 		s.hi = 1
@@ -88,9 +97,10 @@ func (d *doc) bar(x, y, h float64, v *float64, s scale, verdict rules.Verdict, w
 		d.put(zero+1.5, y+h/2+1.2, "–", small, false)
 		return
 	}
-	end := x + span*(*v-s.lo)/(s.hi-s.lo)
+	end := x + span*(min(max(*v, s.lo), s.hi)-s.lo)/(s.hi-s.lo)
 	a, b := min(zero, end), max(zero, end)
-	top, tall := y+1.4, h-2.8
+	const tall = 3.6
+	top := y + (h-tall)/2
 	p.SetLineWidth(0.8 * mmPerPt)
 	switch verdict {
 	case rules.Met:
@@ -107,6 +117,12 @@ func (d *doc) bar(x, y, h float64, v *float64, s scale, verdict rules.Verdict, w
 		}
 	default:
 		p.Rect(a, top, max(b-a, 0.3), tall, "D")
+	}
+	if *v > s.hi || *v < s.lo { // a gap near the end: it goes on
+		p.SetDrawColor(255, 255, 255)
+		p.SetLineWidth(2 * mmPerPt)
+		cut := end - 2*math.Copysign(1, *v)
+		p.Line(cut-0.8, top+tall+0.4, cut+0.8, top-0.4)
 	}
 	d.put(math.Max(b, zero)+1.2, y+h/2+1.2, write(*v), small, false)
 }

@@ -48,14 +48,15 @@ type line struct {
 // level is a limit's temperature: a line from one time to another with its words at the line.
 type level struct {
 	words    []string // temperature, name: in one line if there is room, else in two
+	more     int      // further limits at the same temperature
 	y        float64
 	from, to float64
 }
 
-// band is a step: its bounds and its name.
+// band is a step: its bounds, its name, and a shorter way to say it.
 type band struct {
-	name     string
-	from, to float64
+	name, short string
+	from, to    float64
 }
 
 // spot marks an instant on a curve.
@@ -68,7 +69,9 @@ type spot struct {
 type chart struct {
 	xName, yName   string
 	x0, x1, y0, y1 float64
-	xTicks, yTicks []float64
+	xTicks         []plot.Tick
+	yTicks         []float64
+	broken         []float64 // where the axis of time is drawn shorter
 	lines          []line
 	levels         []level
 	bands          []band
@@ -94,7 +97,7 @@ func (f *chart) draw(c *canvas) {
 	p.Title.TextStyle.Font, p.Title.TextStyle.Handler = p.X.Label.TextStyle.Font, faces().measure
 	p.Legend.TextStyle.Font, p.Legend.TextStyle.Handler = p.X.Label.TextStyle.Font, faces().measure
 	p.X.Label.Text, p.Y.Label.Text = f.xName, f.yName
-	p.X.Tick.Marker, p.Y.Tick.Marker = marks(f.xTicks), marks(f.yTicks)
+	p.X.Tick.Marker, p.Y.Tick.Marker = plot.ConstantTicks(f.xTicks), marks(f.yTicks)
 	p.Add(f)
 	widest := 0.0
 	for _, l := range f.lines {
@@ -148,6 +151,12 @@ func (f *chart) Plot(c draw.Canvas, p *plot.Plot) {
 		ls := draw.LineStyle{Color: black, Width: 1, Dashes: []vg.Length{5, 2, 1, 2}}
 		c.StrokeLine2(ls, x(l.from), y(l.y), x(l.to), y(l.y))
 	}
+	for _, at := range f.broken { // the axis is broken, and so is everything above it
+		for _, dx := range []vg.Length{-2, 2} {
+			c.StrokeLine2(draw.LineStyle{Color: black, Width: 0.9}, x(at)+dx-2, c.Min.Y-5, x(at)+dx+2, c.Min.Y+5)
+			c.StrokeLine2(draw.LineStyle{Color: grey, Width: 0.7, Dashes: []vg.Length{1, 3}}, x(at)+dx, c.Min.Y+5, x(at)+dx, c.Max.Y-vg.Length(f.size*1.5))
+		}
+	}
 	for i := len(f.lines) - 1; i >= 0; i-- {
 		f.plotLine(c, x, y, i, runs[i])
 	}
@@ -184,6 +193,9 @@ func (f *chart) plotBands(c draw.Canvas, x func(float64) vg.Length, taken *label
 		}
 		room := float64(x(b.to)-x(b.from)) * mmPerPt
 		s := f.fit(b.name, i, room-1)
+		if b.short != "" && !strings.HasSuffix(s, b.name) {
+			s = f.fit(b.short, i, room-1)
+		}
 		c.FillText(st, vg.Point{X: x(b.from) + 2.5, Y: c.Max.Y - 2}, s)
 	}
 	if len(f.bands) > 0 {
@@ -251,11 +263,12 @@ func (f *chart) plotLine(c draw.Canvas, x, y func(float64) vg.Length, i int, run
 	}
 }
 
-// placeLevel finds room for the words of a limit at its line, in one line or else in two.
+// placeLevel finds room for the words of a limit at its line, in one line, in several, or without its name.
 func (f *chart) placeLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level, taken *labels) note {
 	var found note
 	least := math.Inf(1)
-	for _, lines := range [][]string{{strings.Join(l.words, " – ")}, l.words} {
+	narrow := append([]string{l.words[0]}, wrap(unseen{}.clean(l.words[1]), 36*f.size/small, f.size, false)...)
+	for k, lines := range [][]string{{strings.Join(l.words, " – ")}, l.words, narrow, l.words[:1]} {
 		w := vg.Length(0)
 		for _, s := range lines {
 			w = max(w, f.style(false).Width(s)+3)
@@ -270,7 +283,11 @@ func (f *chart) placeLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level
 		if end := x(l.to) + 3; end+w < c.Max.X { // or behind its end
 			at = append(at, vg.Point{X: end, Y: y(l.y) - h/2})
 		}
-		if box, cost := taken.best(at, w, h, c.Rectangle); cost < least {
+		box, cost := taken.best(at, w, h, c.Rectangle)
+		if k == 3 { // the temperature alone rather than its name across a curve; the sentence below names it
+			cost += 12
+		}
+		if len(lines) < 5 && cost < least {
 			found, least = note{words: lines, box: box}, cost
 		}
 	}
@@ -402,12 +419,82 @@ func ticksTo(lo, hi float64, steps []float64, n int) []float64 {
 	return t
 }
 
-// clockAxis gives the unit of time of a chart in words, its length in seconds, and the marks.
-func clockAxis(endS float64) (name string, unitS float64, at []float64) {
-	if endS <= 4*3600 {
-		return say("axis minutes"), 60, ticksTo(0, endS/60, []float64{1, 2, 5, 10, 15, 20, 30, 60}, 9)
+// timeAxis is the axis of time of a chart. A step that is much longer than the others together, such as a cold store, is drawn
+// shorter, with a break in the axis, so that the others can be seen.
+type timeAxis struct {
+	name   string
+	unitS  float64
+	pieces []piece
+	ticks  []plot.Tick
+}
+
+// piece is a step on the axis: from t0 to t1 (s), drawn from x0 to x1 (in the unit of the axis).
+type piece struct {
+	t0, t1, x0, x1 float64
+	broken         bool
+}
+
+// at is where an instant (s) stands on the axis.
+func (a *timeAxis) at(t float64) float64 {
+	for _, p := range a.pieces {
+		if t <= p.t1 && p.t1 > p.t0 {
+			return p.x0 + (p.x1-p.x0)*max(0, t-p.t0)/(p.t1-p.t0)
+		}
 	}
-	return say("axis hours"), 3600, ticksTo(0, endS/3600, []float64{0.5, 1, 2, 3, 4, 6, 12, 24, 48, 96, 168}, 10)
+	return a.end()
+}
+
+func (a *timeAxis) end() float64 { return a.pieces[len(a.pieces)-1].x1 }
+
+// newTimeAxis lays out the steps of a history.
+func newTimeAxis(h *model.History) *timeAxis {
+	const long = 6 * 3600.0 // s; shorter steps are never drawn shorter
+	rest := 0.0
+	for _, sp := range h.Spans {
+		if sp.EndS-sp.StartS <= long {
+			rest += sp.EndS - sp.StartS
+		}
+	}
+	a := &timeAxis{name: say("axis minutes"), unitS: 60}
+	if h.EndS() > 4*3600 {
+		a.name, a.unitS = say("axis hours"), 3600
+	}
+	x := 0.0
+	for _, sp := range h.Spans {
+		wide := sp.EndS - sp.StartS
+		broken := rest > 0 && wide > long && wide > rest
+		if broken {
+			wide = rest / 3
+		}
+		a.pieces = append(a.pieces, piece{sp.StartS, sp.EndS, x, x + wide/a.unitS, broken})
+		x += wide / a.unitS
+	}
+	a.mark()
+	return a
+}
+
+// mark puts marks at round times outside the steps that are drawn shorter.
+func (a *timeAxis) mark() {
+	steps := []float64{1, 2, 5, 10, 15, 20, 30, 60}
+	if a.unitS == 3600 {
+		steps = []float64{0.5, 1, 2, 3, 4, 6, 12, 24, 48, 96, 168}
+	}
+	shown := ticksTo(0, a.end(), steps, 9)
+	step := steps[0]
+	if len(shown) > 1 {
+		step = shown[1] - shown[0]
+	}
+	for _, p := range a.pieces {
+		if p.broken {
+			continue
+		}
+		for k := math.Ceil(p.t0/a.unitS/step - 1e-9); k*step <= p.t1/a.unitS+1e-9; k++ {
+			at := a.at(k * step * a.unitS)
+			if n := len(a.ticks); n == 0 || at-a.ticks[n-1].Value > 0.55*step {
+				a.ticks = append(a.ticks, plot.Tick{Value: at, Label: plain(k*step, 2, nearest)})
+			}
+		}
+	}
 }
 
 // shown turns °C into the unit of the charts.
@@ -442,21 +529,21 @@ func chartTimes(h *model.History) []float64 {
 // history makes the temperature-time chart. With everything it shows surface and medium too.
 func (h *Head) history(p *Product, d *deciding, size, ends float64, everything bool) *chart {
 	hist := d.history
-	name, unitS, ticks := clockAxis(hist.EndS())
-	f := &chart{xName: name, yName: say("axis temperature", h.degree()), x0: 0, x1: hist.EndS() / unitS, xTicks: ticks, size: size, ends: ends}
+	axis := newTimeAxis(hist)
+	f := &chart{xName: axis.name, yName: say("axis temperature", h.degree()), x0: 0, x1: axis.end(), xTicks: axis.ticks, size: size, ends: ends}
 	times := chartTimes(hist)
 	course := func(name string, on *model.History, at model.Place) {
 		c := make([]float64, len(times))
 		on.Course(at, times, c)
 		l := line{name: name}
 		for i := range times {
-			l.x, l.y = append(l.x, times[i]/unitS), append(l.y, h.shown(c[i]))
+			l.x, l.y = append(l.x, axis.at(times[i])), append(l.y, h.shown(c[i]))
 		}
 		f.lines = append(f.lines, l)
 	}
 	course(d.placeName, hist, d.place)
 	if everything {
-		h.others(p, d, f, course, times, unitS)
+		h.others(p, d, f, course, times, axis)
 	}
 	lo, hi := math.Inf(1), math.Inf(-1)
 	for _, l := range f.lines {
@@ -466,7 +553,7 @@ func (h *Head) history(p *Product, d *deciding, size, ends float64, everything b
 			}
 		}
 	}
-	for _, l := range h.levels(p, hist, unitS) {
+	for _, l := range h.levels(p, hist, axis) {
 		lo, hi = min(lo, l.y), max(hi, l.y)
 		f.levels = append(f.levels, l)
 	}
@@ -474,14 +561,19 @@ func (h *Head) history(p *Product, d *deciding, size, ends float64, everything b
 	f.y1 = hi + 0.17*(hi-lo) + 1
 	f.yTicks = ticksTo(f.y0, hi+0.03*(hi-lo), []float64{1, 2, 5, 10, 20, 25, 50, 100}, 8)
 	for _, sp := range hist.Spans {
-		f.bands = append(f.bands, band{sp.Step.Name, sp.StartS / unitS, sp.EndS / unitS})
+		b := band{name: sp.Step.Name, from: axis.at(sp.StartS), to: axis.at(sp.EndS)}
+		if p := axis.pieces[len(f.bands)]; p.broken {
+			b.name, b.short = say("band broken", sp.Step.Name, duration(p.t1-p.t0, nearest)), sp.Step.Name
+			f.broken = append(f.broken, (p.x0+p.x1)/2)
+		}
+		f.bands = append(f.bands, b)
 	}
-	f.spots = h.spots(d, hist, unitS)
+	f.spots = h.spots(d, hist, axis)
 	return f
 }
 
 // others adds surface, medium and the run with the lower conductivity.
-func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *model.History, model.Place), times []float64, unitS float64) {
+func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *model.History, model.Place), times []float64, axis *timeAxis) {
 	hist := d.history
 	if hist.Recorded {
 		for _, pt := range hist.Points {
@@ -496,7 +588,7 @@ func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *mo
 		l := line{name: say("line medium")}
 		some := false
 		add := func(t float64, c float64) {
-			l.x, l.y = append(l.x, t/unitS), append(l.y, h.shown(c))
+			l.x, l.y = append(l.x, axis.at(t)), append(l.y, h.shown(c))
 			some = some || !math.IsNaN(c)
 		}
 		for _, sp := range hist.Spans {
@@ -536,7 +628,7 @@ func surfacePlace(p *model.Product) (model.Place, bool) {
 }
 
 // levels are the temperatures of the limits, each once, over the stages that they are about.
-func (h *Head) levels(p *Product, hist *model.History, unitS float64) []level {
+func (h *Head) levels(p *Product, hist *model.History, axis *timeAxis) []level {
 	var out []level
 	add := func(l *rules.Limit, heading string, c *float64) {
 		if c == nil {
@@ -556,10 +648,13 @@ func (h *Head) levels(p *Product, hist *model.History, unitS float64) []level {
 				return
 			}
 		}
-		n := level{words: []string{h.briefly(l, heading, c), l.Name}, y: h.shown(*c), from: from / unitS, to: to / unitS}
+		n := level{words: []string{h.briefly(l, heading, c), l.Name}, y: h.shown(*c), from: axis.at(from), to: axis.at(to)}
 		for i := range out {
 			if out[i].y == n.y {
 				out[i].from, out[i].to = min(out[i].from, n.from), max(out[i].to, n.to)
+				if out[i].words[1] != l.Name {
+					out[i].more++
+				}
 				return
 			}
 		}
@@ -579,6 +674,11 @@ func (h *Head) levels(p *Product, hist *model.History, unitS float64) []level {
 			add(f.Limit, "", &t.Rows[len(t.Rows)-1].C)
 		}
 	}
+	for i := range out {
+		if out[i].more > 0 {
+			out[i].words[1] += say("level more", out[i].more)
+		}
+	}
 	return out
 }
 
@@ -592,7 +692,7 @@ func (h *Head) briefly(l *rules.Limit, heading string, c *float64) string {
 }
 
 // spots marks where the deciding limit's clock starts and ends.
-func (h *Head) spots(d *deciding, hist *model.History, unitS float64) []spot {
+func (h *Head) spots(d *deciding, hist *model.History, axis *timeAxis) []spot {
 	if d.finding == nil {
 		return nil
 	}
@@ -601,7 +701,7 @@ func (h *Head) spots(d *deciding, hist *model.History, unitS float64) []spot {
 		if !finite(t) || *t < 0 || *t > hist.EndS() {
 			return
 		}
-		out = append(out, spot{say(word, duration(*t, nearest)), *t / unitS, h.shown(hist.At(d.place, *t))})
+		out = append(out, spot{say(word, duration(*t, nearest)), axis.at(*t), h.shown(hist.At(d.place, *t))})
 	}
 	add("spot starts", d.finding.ClockStartS)
 	add("spot ends", d.finding.ClockEndS)
@@ -623,7 +723,7 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 	}
 	times := profileTimes(hist)
 	f := &chart{xName: name, yName: say("axis temperature", h.degree()), x0: 0, x1: (hi - lo) * 1000, size: size, ends: ends}
-	f.xTicks = ticksTo(0, f.x1, []float64{0.5, 1, 2, 5, 10, 20, 25, 50, 100, 200}, 9)
+	f.xTicks = marks(ticksTo(0, f.x1, []float64{0.5, 1, 2, 5, 10, 20, 25, 50, 100, 200}, 9))
 	f.y0, f.y1 = math.Inf(1), math.Inf(-1)
 	for _, t := range times {
 		l := line{name: say("profile at", duration(t, nearest))}

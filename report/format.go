@@ -207,7 +207,11 @@ func citation(l *rules.Limit) string {
 		}
 	}
 	add("", l.Code)
-	add("clause ", l.Clause)
+	if strings.HasPrefix(strings.ToLower(strings.TrimSpace(l.Clause)), "clause") {
+		add("", l.Clause)
+	} else {
+		add("clause ", l.Clause)
+	}
 	add("edition ", l.Edition)
 	add("issued by ", l.IssuedBy)
 	if strings.TrimSpace(l.Code) == "" {

@@ -357,7 +357,8 @@ func (d *doc) finish(w io.Writer) (err error) {
 	n := d.pdf.PageCount()
 	for i := 1; i <= n; i++ {
 		d.pdf.SetPage(i)
-		d.pdf.SetFont(family, "", 1) // the last page's font is not this page's
+		d.pdf.SetFont(family, "", 1) // the last page's font and colour are not this page's
+		d.pdf.SetFillColor(255, 255, 255)
 		d.running(i, n)
 	}
 	return d.pdf.Output(w)

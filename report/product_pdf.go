@@ -156,7 +156,13 @@ func (x *sheet) slowestSentence() string {
 	if hist.Recorded {
 		key = "chart sentence record"
 	}
-	return say(key, x.decides.placeName, strings.Join(s, "; "))
+	out := say(key, x.decides.placeName, strings.Join(s, "; "))
+	for i, p := range newTimeAxis(hist).pieces {
+		if p.broken {
+			out += say("axis broken", hist.Spans[i].Step.Name, duration(p.t1-p.t0, nearest))
+		}
+	}
+	return out
 }
 
 // cautious is the rounding of a course to the unfavourable side: down while heating, up otherwise.
@@ -214,7 +220,7 @@ func instant(f *rules.Finding) float64 {
 // stepAt is the name of the step at an instant, s.
 func (x *sheet) stepAt(t float64) string {
 	for _, sp := range x.decides.history.Spans {
-		if t <= sp.EndS {
+		if t <= sp.EndS+0.5 {
 			return sp.Step.Name
 		}
 	}
@@ -591,8 +597,8 @@ func (x *sheet) slowest() {
 		}
 		rows = append(rows, []string{name, duration(sp.StartS, nearest), duration(sp.EndS, nearest), x.mediumAtEnd(&sp), cold, hot})
 	}
-	x.table([]col{{title: say("col step"), wide: 34, bold: true}, {title: say("col start"), wide: 20}, {title: say("col end"), wide: 20}, {title: say("col medium"), wide: 30},
-		{title: say("col coldest"), wide: 38}, {title: say("col hottest"), wide: 38}}, rows, small)
+	x.table([]col{{title: say("col step"), wide: 32, bold: true}, {title: say("col start"), wide: 23}, {title: say("col end"), wide: 23}, {title: say("col medium"), wide: 28},
+		{title: say("col coldest"), wide: 37}, {title: say("col hottest"), wide: 37}}, rows, small)
 	x.text(x.moves())
 }
 

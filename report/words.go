@@ -194,7 +194,7 @@ var words = map[string]string{
 
 	// limits
 	"limits title":      "Limits and margins, worst first",
-	"bars sentence":     "The bars start at the limit: to the right is room, to the left is what is lacking; full = met, hatched = not met, empty = cannot be told. %s.",
+	"bars sentence":     "The bars start at the limit: to the right is room, to the left is what is lacking; full = met, hatched = not met, empty = cannot be told; a bar with a gap goes on. %s.",
 	"bars one":          "%s: %s, %s",
 	"no margin":         "no margin in numbers",
 	"idle title":        "Limits that do not apply",
@@ -401,4 +401,7 @@ var words = map[string]string{
 	"mm along":           ", %s mm along",
 	"plainly logs":       "the heat that the recipe's limit counts at %s",
 	"plainly equivalent": "at least the effect of %s at %s",
+	"band broken":        "%s (%s, drawn shorter)",
+	"level more":         " (+%d)",
+	"axis broken":        " Drawn shorter: %s (%s).",
 }
