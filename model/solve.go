@@ -300,11 +300,16 @@ func (s *solver) ready(span *Span, axes [3]*axis, nd *nodes, lo, hi float64) *ch
 // filmsDepend tells whether a film of the step depends on the food's temperature.
 func (s *solver) filmsDepend(st *Step) bool {
 	for _, e := range exposures(s.product.Shape, st) {
-		if (e.Surface == StillAir || e.Surface == MovingAir) && e.FilmW == nil {
+		if e.filmDepends() {
 			return true
 		}
 	}
 	return false
+}
+
+// filmDepends tells whether the film depends on temperatures.
+func (e *Exposure) filmDepends() bool {
+	return (e.Surface == StillAir || e.Surface == MovingAir) && e.FilmW == nil
 }
 
 // film makes a step ready with properties and films at a mean temperature of the food.
@@ -324,7 +329,10 @@ func (s *solver) film(span *Span, meanC float64) *chainStep {
 			return f
 		}
 		m := s.raised(st, e, span)
-		fc := filmCase{shape: s.product.Shape, size: s.product.Size, foodC: meanC, mediumC: m.meanC(st.DurationS), altitudeM: st.AltitudeM}
+		fc := filmCase{shape: s.product.Shape, size: s.product.Size, foodC: meanC, altitudeM: st.AltitudeM}
+		if e.filmDepends() {
+			fc.mediumC = m.meanC(st.DurationS)
+		}
 		if e.AirMS != nil {
 			fc.airMS = *e.AirMS
 		}
