@@ -10,6 +10,7 @@ import (
 	"runtime"
 	"slices"
 	"strings"
+	"sync"
 	"time"
 
 	"github.com/schollz/progressbar/v3"
@@ -69,7 +70,7 @@ func check(cmd *cobra.Command, args []string, o *checkOptions) error {
 	r := &runner{ctx: cmd.Context(), plan: plan, head: head, folder: folder, options: o, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
 	if err := r.all(); err != nil {
 		if errors.Is(err, context.Canceled) {
-			return &failure{exitFault, fmt.Errorf("stopped: the product reports that are finished are whole in %s; there is no summary", folder)}
+			return &failure{exitFault, fmt.Errorf("stopped: the product reports that were finished are whole in %s; summary, results and report.txt of this run were not written", folder)}
 		}
 		return &failure{exitFault, err}
 	}
@@ -178,6 +179,7 @@ type runner struct {
 	options  *checkOptions
 	progress *progressbar.ProgressBar
 	rows     []report.Row
+	advice   []string // by row: the advice that is not met, a line each
 	files    []string
 }
 
@@ -217,7 +219,7 @@ func (r *runner) all() error {
 		if !r.options.noPDF && !r.options.onePDF {
 			row.File = d.file
 		}
-		r.rows = append(r.rows, row)
+		r.rows, r.advice = append(r.rows, row), append(r.advice, adviceNotMet(d.product))
 		return nil
 	}
 	if err := r.each(true, add); err != nil {
@@ -258,11 +260,13 @@ type done struct {
 // if wanted. The order of what is handed on does not depend on the number of processors.
 func (r *runner) each(reports bool, take func(*done) error) error {
 	ctx, cancel := context.WithCancel(r.ctx)
+	var working sync.WaitGroup
+	defer working.Wait() // nobody may be left who writes a file
 	defer cancel()
 	workers := runtime.GOMAXPROCS(0)
 	queue := make(chan chan *done, ahead*workers)
 	slots := make(chan struct{}, workers)
-	go func() {
+	working.Go(func() {
 		defer close(queue)
 		for i := range r.plan.Products {
 			result := make(chan *done, 1)
@@ -276,12 +280,12 @@ func (r *runner) each(reports bool, take func(*done) error) error {
 				return
 			case queue <- result:
 			}
-			go func() {
+			working.Go(func() {
 				defer func() { <-slots }()
 				result <- r.one(i, reports)
-			}()
+			})
 		}
-	}()
+	})
 	for result := range queue {
 		d := <-result
 		if r.ctx.Err() != nil {
@@ -289,9 +293,6 @@ func (r *runner) each(reports bool, take func(*done) error) error {
 		}
 		if d.err != nil {
 			return d.err
-		}
-		if d.product == nil { // refused while it was calculated; told by one
-			continue
 		}
 		if err := take(d); err != nil {
 			return err
@@ -322,24 +323,63 @@ func (r *runner) one(i int, reports bool) (d *done) {
 	return d
 }
 
-// tell prints the overview: a line a product, the worst first.
+// tell prints the overview: the products that need attention first, each with the limit that decides and the room it leaves.
 func (r *runner) tell(w io.Writer) {
-	rows := slices.Clone(r.rows)
-	slices.SortStableFunc(rows, func(a, b report.Row) int { return weigh(a.Verdict) - weigh(b.Verdict) })
-	for _, n := range r.head.NotCalculated {
-		fmt.Fprintf(w, "%-14s %s\n", "not calculated", n.Product)
+	const indent = "               "
+	for _, n := range r.head.NotCalculated[:min(len(r.head.NotCalculated), most)] {
+		fmt.Fprintf(w, "%-14s %s\n%ssee the errors above\n", "NOT CALCULATED", n.Product, indent)
 	}
-	for _, row := range rows[:min(len(rows), most)] {
-		line := fmt.Sprintf("%-14s %s", row.Verdict, row.Product)
-		if row.Why != "" {
-			line += ": " + row.Why
+	order := make([]int, len(r.rows))
+	for i := range order {
+		order[i] = i
+	}
+	slices.SortStableFunc(order, func(a, b int) int { return weigh(r.rows[a].Verdict) - weigh(r.rows[b].Verdict) })
+	for _, i := range order[:min(len(order), most)] {
+		row := &r.rows[i]
+		fmt.Fprintf(w, "%-14s %s\n", strings.ToUpper(row.Verdict.String()), row.Product)
+		line := row.Deciding
+		if room := row.Room(r.head); room != "" {
+			line += ": " + room
 		}
-		fmt.Fprintln(w, line)
+		if line != "" {
+			fmt.Fprintf(w, "%s%s\n", indent, line)
+		}
+		if row.Why != "" {
+			fmt.Fprintf(w, "%s%s\n", indent, row.Why)
+		}
+		if r.advice[i] != "" {
+			fmt.Fprintf(w, "%sadvice not met: %s\n", indent, r.advice[i])
+		}
 	}
-	if len(rows) > most {
-		fmt.Fprintf(w, "… and %s more, in the summary\n", count(len(rows)-most, "product"))
+	if len(r.rows) > most || len(r.head.NotCalculated) > most {
+		fmt.Fprintf(w, "… at most %d of a kind are shown here; all of them are in report.txt\n", most)
 	}
-	fmt.Fprintf(w, "\nCalculated from the inputs, not measured; your food authority decides. Results in %s\n", r.folder)
+	fmt.Fprintf(w, "\n%s\nCalculated from the inputs, not measured; your food authority decides.\nResults in %s\n", r.counts(), r.folder)
+}
+
+// counts says how many products have which verdict.
+func (r *runner) counts() string {
+	n := map[rules.Verdict]int{}
+	for _, row := range r.rows {
+		n[row.Verdict]++
+	}
+	s := fmt.Sprintf("%s: %d met, %d not met, %d cannot tell", count(len(r.rows)+len(r.head.NotCalculated), "product"), n[rules.Met], n[rules.NotMet],
+		n[rules.CannotTell]+n[rules.NotApplicable])
+	if k := len(r.head.NotCalculated); k > 0 {
+		s += fmt.Sprintf(", %d not calculated", k)
+	}
+	return s
+}
+
+// adviceNotMet tells the limits of level advice that a product does not meet; they do not weigh in its verdict.
+func adviceNotMet(p *report.Product) string {
+	var s []string
+	for _, f := range p.Judgement.Findings {
+		if f.Level == "advice" && f.Verdict == rules.NotMet {
+			s = append(s, f.Limit.Name+". "+f.Why)
+		}
+	}
+	return strings.Join(s, "; ")
 }
 
 // weigh puts the worst verdict first.

@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"errors"
 	"fmt"
 	"io"
@@ -40,15 +41,23 @@ func writeWhole(path string, write func(io.Writer) error) (err error) {
 
 // cannotWrite says which file could not be written and why, without the name of the temporary file.
 func cannotWrite(path string, err error) error {
+	if errors.Is(err, context.Canceled) {
+		return err
+	}
+	return fmt.Errorf("%s cannot be written (%w): choose another place, or make room", path, cause(err))
+}
+
+// cause is an error of the system without the name of the file that it met.
+func cause(err error) error {
 	var p *os.PathError
 	var l *os.LinkError
 	switch {
 	case errors.As(err, &p):
-		err = p.Err
+		return p.Err
 	case errors.As(err, &l):
-		err = l.Err
+		return l.Err
 	}
-	return fmt.Errorf("%s cannot be written (%w): name another folder with --out, or make room", path, err)
+	return err
 }
 
 // makeFolder makes the folder of the results and tries whether it takes files.

@@ -41,12 +41,17 @@ func main() { os.Exit(run(os.Args[1:], os.Stdin, os.Stdout, os.Stderr)) }
 func run(args []string, in io.Reader, out, errs io.Writer) int {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	defer stop()
+	context.AfterFunc(ctx, stop) // a second Ctrl-C ends the program at once
+	results := &told{Writer: out}
 	root := rootCommand()
 	root.SetArgs(args)
 	root.SetIn(in)
-	root.SetOut(out)
+	root.SetOut(results)
 	root.SetErr(errs)
 	err := root.ExecuteContext(ctx)
+	if results.err != nil {
+		err = &failure{exitFault, fmt.Errorf("what was asked for cannot be told (%w): send it elsewhere", cause(results.err))}
+	}
 	if err == nil {
 		return exitMet
 	}
@@ -59,6 +64,20 @@ func run(args []string, in io.Reader, out, errs io.Writer) int {
 		fmt.Fprintln(errs, "slowpoint: "+text)
 	}
 	return code
+}
+
+// told keeps the first error of writing, which fmt.Fprintf and its like would let go by.
+type told struct {
+	io.Writer
+	err error
+}
+
+func (t *told) Write(p []byte) (int, error) {
+	n, err := t.Writer.Write(p)
+	if err != nil && t.err == nil {
+		t.err = err
+	}
+	return n, err
 }
 
 func rootCommand() *cobra.Command {
