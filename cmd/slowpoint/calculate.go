@@ -11,20 +11,31 @@ import (
 // by about 15 %, and values below the calculated ones by 3 to 10 % are common (ASHRAE and other published diffusivities).
 const lowConductivity = 0.9
 
-// calculate predicts and judges one product.
-func (r *runner) calculate(p *workbook.Product) (*report.Product, error) {
+// judged predicts and judges one product.
+func (r *runner) judged(p *workbook.Product) (*report.Product, error) {
 	h, err := model.Solve(p.Product, p.Steps, model.Options{})
 	if err != nil {
 		return nil, err
 	}
 	out := &report.Product{Product: p.Product, Steps: p.Steps, Family: p.Family, RecipeVersion: p.RecipeVersion, Batch: p.Batch,
-		Process: p.Process, Note: p.Note, Readings: p.Readings(), History: h}
+		Process: p.Process, Note: p.Note, History: h}
 	if p.Product.Food.Composed {
 		if out.Low, err = model.Solve(p.Product, p.Steps, model.Options{ConductivityFactor: lowConductivity}); err != nil {
 			return nil, err
 		}
 	}
-	out.Samples = h.Sample(r.head.EveryS)
 	out.Judgement = rules.Judge(r.plan.Limits, r.plan.Groups, rules.Subject{Product: p.Name, Family: p.Family, History: h, Low: out.Low})
+	return out, nil
+}
+
+// calculate makes everything that a product's documents show.
+func (r *runner) calculate(p *workbook.Product) (*report.Product, error) {
+	out, err := r.judged(p)
+	if err != nil {
+		return nil, err
+	}
+	out.Readings = p.Readings()
+	out.Samples = out.History.Sample(r.head.EveryS)
+	out.Lever = r.lever(p, out.Judgement.Verdict)
 	return out, nil
 }
