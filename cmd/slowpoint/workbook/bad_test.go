@@ -432,7 +432,7 @@ func TestBad(t *testing.T) {
 			}
 		})
 	}
-	if n < 25 {
+	if n < 60 {
 		t.Errorf("only %d cases in testdata/bad", n)
 	}
 }

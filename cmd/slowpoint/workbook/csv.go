@@ -8,7 +8,6 @@ import (
 	"errors"
 	"fmt"
 	"io"
-	"io/fs"
 	"os"
 	"path/filepath"
 	"sort"
@@ -27,11 +26,8 @@ const (
 )
 
 // readFolder takes every .csv file of a folder as a sheet, in the order of their names, and the digest of them all.
-func readFolder(folder string) ([]*grid, string, error) { return readFiles(os.DirFS(folder), folder) }
-
-// readFiles does so for the files of a folder wherever it is kept; messages name it.
-func readFiles(files fs.FS, folder string) ([]*grid, string, error) {
-	list, err := fs.ReadDir(files, ".")
+func readFolder(folder string) ([]*grid, string, error) {
+	list, err := os.ReadDir(folder)
 	if err != nil {
 		return nil, "", fmt.Errorf("the folder %s cannot be read: %v", folder, reason(err))
 	}
@@ -44,12 +40,12 @@ func readFiles(files fs.FS, folder string) ([]*grid, string, error) {
 			continue
 		}
 		path := filepath.Join(folder, f.Name())
-		if info, err := fs.Stat(files, f.Name()); err == nil {
+		if info, err := os.Stat(path); err == nil {
 			if total += info.Size(); total > mostBytes {
 				return nil, "", fmt.Errorf("the folder %s holds more than %d MB of CSV; divide the plan into several", folder, mostBytes>>20)
 			}
 		}
-		data, err := fs.ReadFile(files, f.Name())
+		data, err := os.ReadFile(path)
 		if err != nil {
 			return nil, "", fmt.Errorf("%s cannot be read: %v", path, reason(err))
 		}

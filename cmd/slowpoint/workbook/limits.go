@@ -26,6 +26,7 @@ type timeTable struct {
 	rules.Table
 	because  cell.Errors
 	readings []cell.Reading
+	hidden   bool // one of its rows
 }
 
 // group is a row of Groups.
@@ -71,6 +72,7 @@ func (ls *limits) readTables() {
 			tt.Rows = append(tt.Rows, rules.Row{At: l.ref(), C: at.Computed, S: time.Computed, Typed: at.Typed + ", " + time.Typed})
 		}
 		tt.because = append(tt.because, l.because...)
+		tt.hidden = tt.hidden || l.row.hidden
 		tt.readings = append(tt.readings, l.readings...)
 	}
 }
@@ -149,8 +151,11 @@ func (ls *limits) read(l *line) {
 	choices(l, &lim)
 	words := ls.citation(l, &lim)
 	var shared [][]cell.Reading
+	hidden := l.row.hidden
 	if name := l.words("Table"); name != "" {
-		if tt := ls.tables[key(name)]; tt == nil {
+		if tt := ls.tables[key(name)]; tt == nil && len(ls.unread["Tables"]) > 0 {
+			l.suffer(ls.unread["Tables"])
+		} else if tt == nil {
 			var known []string
 			for _, o := range ls.tables {
 				known = append(known, o.Name)
@@ -160,12 +165,12 @@ func (ls *limits) read(l *line) {
 		} else {
 			lim.Table = &tt.Table
 			l.suffer(tt.because)
-			shared = append(shared, tt.readings)
+			shared, hidden = append(shared, tt.readings), hidden || tt.hidden
 		}
 	}
 	for g, n := ls.groups[key(lim.Group)], 0; lim.Group != "" && g != nil && n <= len(ls.groups); g, n = ls.groups[key(g.Within)], n+1 {
 		l.suffer(g.line.because)
-		shared = append(shared, g.line.readings)
+		shared, hidden = append(shared, g.line.readings), hidden || g.line.row.hidden
 	}
 	if lim.Kind != nil {
 		needs(l, lim.Kind)
@@ -191,6 +196,9 @@ func (ls *limits) read(l *line) {
 	ls.plan.Limits = append(ls.plan.Limits, lim)
 	shared = append([][]cell.Reading{l.readings}, shared...)
 	for _, p := range concerned {
+		if hidden {
+			p.suffer(l.because)
+		}
 		p.readings = append(p.readings, shared...)
 	}
 }
@@ -338,6 +346,9 @@ func (ls *limits) where(l *line, lim *rules.Limit, concerned []*product) {
 		}
 	}
 	switch {
+	case have == 0 && len(ls.unread["Points"]) > 0:
+		lim.Where.Name = typed
+		l.suffer(ls.unread["Points"])
 	case have == 0:
 		lim.Where.Name = typed
 		l.fault("Where", typed, whereUnknown, meant(typed, known))
@@ -377,6 +388,10 @@ func clockOf(l *line, lim *rules.Limit) (c rules.Clock) {
 		c.Crossing = true
 	case ofN:
 		v, m := unit.Temperature.Parse(at, nil, l.r.decimal)
+		if m != nil && !strings.ContainsAny(strings.ToUpper(at), "CFK") {
+			l.fault("Clock starts", typed, clockNoUnit)
+			return c
+		}
 		if m != nil {
 			l.fault("Clock starts", typed, wordsNotFound, "does not name a temperature: "+strconv.Quote(at)+" "+m.Says, "", m.Mend)
 			return c
@@ -418,6 +433,11 @@ func choices(l *line, lim *rules.Limit) {
 	lim.Counting = rules.Counting(index("Counting", countWords))
 	lim.Compare = rules.Compare(index("Compare", compareWords))
 	lim.CompareTime = rules.Compare(index("Compare time", compareWords))
+	for _, h := range []string{"Compare", "Compare time"} {
+		if lim.Kind != nil && lim.Kind.Uses(h) && !l.filled(h) {
+			l.note(h, "", "as the rule "+lim.Kind.Name+" does", "blank: the rule's own comparison is taken")
+		}
+	}
 	lim.Advice = l.choice("Level") == "advice"
 	if !l.filled("Level") {
 		l.note("Level", "", "must", "blank: must is taken")

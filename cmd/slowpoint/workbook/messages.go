@@ -23,7 +23,7 @@ var (
 	unknownColumn = saying{"is not a column of the sheet {1}{2}", "correct the heading; a column of your own starts with # or is named by the item Ignore columns of the sheet Plan"}
 	doubledColumn = saying{"is there twice, in columns {1} and {2}", "keep one of the two columns"}
 	headingNoUnit = saying{"has no unit; {1} needs one", "put the unit in brackets, as {2}"}
-	headingUnit_  = saying{"has the unit {1}, which is not a unit of {2}", "units of {2} are {3}"}
+	headingOther  = saying{"has the unit {1}, which is not a unit of {2}", "units of {2} are {3}"}
 	headingKelvin = saying{"is in kelvin, which is not accepted for a temperature", "use °C or °F"}
 	headingNoDiff = saying{"is headed as a temperature, but it is a temperature difference", "write {1} (°C difference) or {1} (°F difference)"}
 	noHeading     = saying{"stands in a column without a heading", "give column {1} a heading, one that starts with # if it is your own, or clear the cell{2}"}
@@ -62,8 +62,8 @@ var (
 	noProducts  = saying{"The plan has no product", "fill the sheet Products"}
 
 	// products, foods
-	sizeMissing     = saying{"{1} is missing: a {2} needs {3}", "fill it, with a unit in the heading or in the cell"}
-	sizeUnused      = saying{"is a {1}, which a {2} does not use; it needs {3}", "clear the cell or change the shape"}
+	sizeMissing     = saying{"{1} is missing: the shape {2} needs {3}", "fill it, with a unit in the heading or in the cell"}
+	sizeUnused      = saying{"is a {1}, which the shape {2} does not use; it needs {3}", "clear the cell or change the shape"}
 	foodMissing     = saying{"Food is missing", "name a food of the sheet Foods or a built-in one; slowpoint foods lists them"}
 	foodForLayers   = saying{"is a food, but a layered slab takes its foods from the sheet Layers", "clear the cell or change the shape"}
 	foodUnknown     = saying{"is neither a food of the sheet Foods nor a built-in one{1}", "slowpoint foods lists the built-in foods"}
@@ -80,40 +80,34 @@ var (
 	airWithMeasured = saying{"is given beside measured properties, which already hold the air", "clear the cell"}
 
 	// steps, faces, courses
-	stepUnknown      = saying{"is not a step of the process {1}{2}", "correct the name"}
-	stepTwice        = saying{"is there twice in the process {1}; the first is in row {2}", "give each step of a process a name of its own"}
-	noMedium         = saying{"Temperature is missing: {1} needs a Temperature or a Course", "fill one of the two"}
-	bothMedia        = saying{"is given beside the temperature {1}", "keep Temperature or Course, not both"}
-	mediumUnused     = saying{"is given, but {1} has no temperature", "clear the cell"}
-	columnUnused     = saying{"is given, but {1} does not use {2}", "clear the cell or choose other surroundings"}
-	columnNeeded     = saying{"{1} is missing: {2} needs it", "{3}"}
-	noSurface        = saying{"Surface is missing: the air is warmer than the food, and a wet surface heats much more slowly than a dry one", "type dry (wrapped, lidded or truly dry) or wet"}
-	looseLid         = saying{"Wrap resistance is missing: loose lid needs it", "measure the air gap under the lid: it is about 0.04 m²K/W a millimetre"}
-	openWithWrap     = saying{"is given, but the cover is open", "clear the cell, or name the cover"}
-	courseUnknown    = saying{"is not a course of the sheet Courses{1}", "correct the name"}
-	courseShort      = saying{"is a course of {1}, shorter than the step of {2}", "add rows to the course up to the end of the step"}
-	courseLong       = saying{"is a course of {1}, longer than the step of {2}; the rest is cut off", ""}
-	courseStart      = saying{"is the first time of the course {1}; a course starts at 0", "add a row at 0, the start of the step"}
-	courseOrder      = saying{"does not come after the row before ({1})", "sort the rows of a course by rising time, each time once"}
-	courseHumidity   = saying{"Relative humidity is missing, but other rows of the course {1} give it", "fill it in every row of a course or in none"}
-	faceWrong        = saying{"is not a face that differs on a {1}; its faces are {2}", "correct the face, or take the row out"}
-	faceNone         = saying{"is a face, but a {1} has one surface", "take the row out"}
-	faceTwice        = saying{"is there twice for this step; the first is in row {1}", "keep one of the rows"}
-	processRefused   = saying{"cannot be calculated: {1}", "{2}"}
-	sharedByFaulty   = saying{"uses what has errors: see {1}", ""}
-	pointCentre      = saying{"is the name of the built-in point at 0, 0, 0", "give the point another name, or type 0 for Up, Across and Along"}
-	pointTwice       = saying{"is there twice for this product; the first is in row {1}", "give each point of a product a name of its own"}
-	pointAxis        = saying{"is not 0, but a {1} has no place {2}", "type 0 or clear the cell"}
-	pointOutside     = saying{"lies outside the product: {1} reaches {2} mm from the centre", "measure from the geometric centre"}
-	pointStirred     = saying{"is a point, but a stirred product has the same temperature everywhere", "take the row out"}
-	surroundingsOnly = saying{"is given on a face of {1}, which has no temperature", "clear the cell"}
+	stepUnknown    = saying{"is not a step of the process {1}{2}", "correct the name"}
+	stepTwice      = saying{"is there twice in the process {1}; the first is in row {2}", "give each step of a process a name of its own"}
+	noMedium       = saying{"Temperature is missing: {1} needs a Temperature or a Course", "fill one of the two"}
+	bothMedia      = saying{"is given beside the temperature {1}", "keep Temperature or Course, not both"}
+	mediumUnused   = saying{"is given, but {1} has no temperature", "clear the cell"}
+	columnUnused   = saying{"is given, but {1} does not use {2}", "clear the cell or choose other surroundings"}
+	columnNeeded   = saying{"{1} is missing: {2} needs it", "{3}"}
+	looseLid       = saying{"Wrap resistance is missing: loose lid needs it", "measure the air gap under the lid: it is about 0.04 m²K/W a millimetre"}
+	openWithWrap   = saying{"is given, but the cover is open", "clear the cell, or name the cover"}
+	courseUnknown  = saying{"is not a course of the sheet Courses{1}", "correct the name"}
+	courseShort    = saying{"is a course of {1}, shorter than the step of {2}", "add rows to the course up to the end of the step"}
+	courseLong     = saying{"is a course of {1}, longer than the step of {2}; the rest is cut off", ""}
+	courseStart    = saying{"is the first time of the course {1}; a course starts at 0", "add a row at 0, the start of the step"}
+	courseOrder    = saying{"does not come after the row before ({1})", "sort the rows of a course by rising time, each time once"}
+	courseHumidity = saying{"Relative humidity is missing, but other rows of the course {1} give it", "fill it in every row of a course or in none"}
+	faceWrong      = saying{"is not a face that differs on the shape {1}; its faces are {2}", "correct the face, or take the row out"}
+	faceNone       = saying{"is a face, but the shape {1} has one surface", "take the row out"}
+	faceTwice      = saying{"is there twice for this step; the first is in row {1}", "keep one of the rows"}
+	processRefused = saying{"cannot be calculated: {1}", "{2}"}
+	pointCentre    = saying{"is the name of the built-in point at 0, 0, 0", "give the point another name, or type 0 for Up, Across and Along"}
+	pointTwice     = saying{"is there twice for this product; the first is in row {1}", "give each point of a product a name of its own"}
+	pointStirred   = saying{"is a point, but a stirred product has the same temperature everywhere", "take the row out"}
 
 	// limits
 	limitNeeds     = saying{"{1} is missing: the rule {2} needs it", "fill it"}
 	limitUnused    = saying{"is given, but the rule {1} does not use {2}", "clear the cell or choose another rule"}
 	stageUnknown   = saying{"is not a stage{1}", "choose from: {2}; join several by +, as cook + rest"}
 	stageNowhere   = saying{"is a stage of no step of the products that the limit applies to", "correct the stage, or take the row out"}
-	stagePair      = saying{"is not a pair of stages", "type the stage that ends and the stage that starts, as cook > cool"}
 	noPair         = saying{"is a pair of stages, which only delay uses", "join stages by +, as cook + rest"}
 	appliesUnknown = saying{"matches no product and no family{1}", "type all, family: NAME, or the name of a product"}
 	familyUnknown  = saying{"matches no family of the sheet Products{1}", "correct the name of the family"}
@@ -121,15 +115,14 @@ var (
 	whereLacking   = saying{"is a point that {1} does not have", "add it to Points for each product that the limit applies to"}
 	tableUnknown   = saying{"is not a table of the sheet Tables{1}", "correct the name"}
 	clockUnknown   = saying{"does not say when the clock starts", "type crossing, crossing of 60 °C, stage start: NAME, or stage end: NAME"}
-	clockFrom      = saying{"is given, but a clock that starts at a stage does not use From", "clear From, or let the clock start at the crossing"}
-	clockNoFrom    = saying{"From is missing: the clock starts when the food falls to it", "fill From, or type crossing of N °C as Clock starts"}
+	clockNoUnit    = saying{"does not say the unit of its temperature", "type it as crossing of 60 °C or crossing of 140 °F"}
+	notAltitude    = saying{"is not an altitude between −500 and 6000 m", "type the height above the sea, such as 350 m"}
 	noCitation     = saying{"{1} {2} missing", "name the document, clause and edition that the limit comes from; the report's front page says that it is missing"}
 	clauseDate     = saying{"looks as if the spreadsheet had turned the {1} into a date", "type it as text (an apostrophe in front), as the code prints it"}
 	clauseDecimal  = saying{"looks as if the spreadsheet had turned the {1} into a decimal number: 1.10 becomes 1.1", "type it as text (an apostrophe in front), as the code prints it"}
 	groupUnknown   = saying{"is not a group of any limit or row of Groups{1}", "correct the name"}
 	groupCycle     = saying{"lies within itself by way of {1}", "let groups lie within each other in one direction only"}
 	groupEmpty     = saying{"is a group that no limit and no other group belongs to", "name it in the column Group of Limits, or take the row out"}
-	valueLikeSheet = saying{"{1}", "{2}"}
 )
 
 // fill puts the arguments into a wording.

@@ -27,6 +27,9 @@ func Read(name string) (*Plan, error) {
 	case err != nil:
 		return nil, fmt.Errorf("%s: it cannot be opened (%s)", name, reason(err))
 	}
+	if !info.IsDir() && !info.Mode().IsRegular() {
+		return nil, fmt.Errorf("%s: it is neither a file nor a folder", name)
+	}
 	var grids []*grid
 	digest := ""
 	if info.IsDir() {
@@ -47,26 +50,13 @@ func Read(name string) (*Plan, error) {
 			return nil, fmt.Errorf("%s: %w", name, err)
 		}
 	}
-	p, err := understand(grids, &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest})
-	if err != nil {
-		return nil, fmt.Errorf("%s: %w", name, err)
-	}
-	return p, nil
-}
-
-// understand fills a plan, of which name and digest are known, from its sheets.
-func understand(grids []*grid, p *Plan) (*Plan, error) {
-	r := newReader(p)
+	p := &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest, Columns: map[string]map[string]int{}}
+	r := &reader{plan: p, formulas: map[cell.Ref]*formulas{}, unread: map[string]cell.Errors{}}
 	if err := r.sheets(grids); err != nil {
-		return nil, err
+		return nil, fmt.Errorf("%s: %w", name, err)
 	}
 	r.read()
 	return p, nil
-}
-
-func newReader(p *Plan) *reader {
-	p.Columns = map[string]map[string]int{}
-	return &reader{plan: p, formulas: map[cell.Ref]*formulas{}, unread: map[string]cell.Errors{}}
 }
 
 // reader is a plan while it is read.
@@ -81,6 +71,7 @@ type reader struct {
 	inOrder  []*formulas
 	problems cell.Errors
 
+	height    []cell.Reading // of the item Altitude
 	foods     map[string]*food
 	courses   map[string]*course
 	processes map[string]*process
@@ -184,7 +175,7 @@ func (r *reader) read() {
 	r.readCourses()
 	r.readProducts()
 	for _, p := range r.products { // what such a sheet would say of a product nobody knows
-		for _, name := range []string{"Foods", "Steps", "Faces"} {
+		for _, name := range []string{"Plan", "Foods", "Steps", "Faces"} {
 			p.suffer(r.unread[name])
 		}
 	}
@@ -270,10 +261,12 @@ func (r *reader) planItems() {
 		}
 		if known == "" {
 			l.fault("Item", item, unknownItem, meant(item, PlanItems), strings.Join(PlanItems, ", "))
+			r.ofAll(l, nearest(item, PlanItems))
 			continue
 		}
 		if first := seen[known]; first > 0 {
 			l.fault("Item", item, duplicate, strconv.Itoa(first), "item")
+			r.ofAll(l, known)
 			continue
 		}
 		seen[known] = l.row.n
@@ -282,6 +275,19 @@ func (r *reader) planItems() {
 		if value != "" {
 			r.planItem(l, known, item, value)
 		}
+		r.ofAll(l, known)
+		if known == altitude {
+			r.height = l.readings
+		}
+	}
+}
+
+const altitude = "Altitude (m)"
+
+// ofAll refuses all products for the faults of an item that all of them are calculated or read with.
+func (r *reader) ofAll(l *line, item string) {
+	if item == altitude || item == "Decimal sign" {
+		r.unread["Plan"] = append(r.unread["Plan"], l.because...)
 	}
 }
 
@@ -297,13 +303,11 @@ func (r *reader) planItem(l *line, known, item, value string) {
 		return ""
 	}
 	switch known {
-	case "Altitude (m)":
+	case altitude:
 		_, inside := splitHeading(item)
 		v, m := unit.Length.Parse(value, unit.Length.Unit(inside), unit.Point)
-		if m != nil {
-			l.fault("Value", value, wordsNotFound, m.Says, "", m.Mend)
-		} else if v.Computed < -500 || v.Computed > 6000 {
-			l.fault("Value", value, saying{"is not an altitude of a kitchen: −500 to 6000 m are accepted", "type the height above the sea"})
+		if m != nil || v.Computed < -500 || v.Computed > 6000 {
+			l.fault("Value", value, notAltitude)
 		} else {
 			r.plan.AltitudeM = v.Computed
 		}

@@ -303,6 +303,10 @@ func (r *reader) medium(l *line, x *model.Exposure, durationS float64) *course {
 		x.Medium = model.Course{TimesS: []float64{0}, C: []float64{typed.Computed}}
 	case name != "":
 		c := r.courses[key(name)]
+		if c == nil && len(r.unread["Courses"]) > 0 {
+			l.suffer(r.unread["Courses"])
+			return nil
+		}
 		if c == nil {
 			l.fault("Course", name, courseUnknown, meant(name, r.courseNames()))
 			return nil
@@ -477,6 +481,13 @@ func (r *reader) concern(pr *process, prodName string, es cell.Errors) {
 
 // chains puts the steps of every product together and asks the model what it cannot calculate.
 func (r *reader) chains() {
+	if r.height == nil {
+		at := cell.Ref{Sheet: "Plan"}
+		if g := r.grids["Plan"]; g != nil {
+			at.Sheet = g.name
+		}
+		r.height = []cell.Reading{{At: at, Column: "Altitude", Used: "0 m", Why: "blank: the height of the sea is taken"}}
+	}
 	for _, p := range r.products {
 		if p.Process == "" {
 			continue
@@ -504,7 +515,9 @@ func (r *reader) chain(p *product, pr *process) {
 		}
 	}
 	for _, s := range pr.steps {
-		p.suffer(s.line.because)
+		if p.own[key(s.Name)] == nil {
+			p.suffer(s.line.because)
+		}
 		for _, f := range s.faces {
 			p.suffer(f.line.because)
 			p.faceFits(f)
@@ -534,16 +547,16 @@ func (r *reader) chain(p *product, pr *process) {
 		if !own {
 			pr.whole, pr.parts = p.Steps, parts
 		} else {
-			p.readings = append(p.before(), append(p.readings, parts...)...)
+			p.readings = append(p.before(r.height), append(p.readings, parts...)...)
 			return
 		}
 	}
-	p.readings = append(p.before(), append(p.readings, pr.parts...)...)
+	p.readings = append(p.before(r.height), append(p.readings, pr.parts...)...)
 }
 
-// before are the readings of the product's own row and of its food.
-func (p *product) before() [][]cell.Reading {
-	out := [][]cell.Reading{p.line.readings}
+// before are the readings of the product's own row, of the height above the sea, and of its food.
+func (p *product) before(height []cell.Reading) [][]cell.Reading {
+	out := [][]cell.Reading{p.line.readings, height}
 	if p.food != nil && len(p.food.readings) > 0 {
 		out = append(out, p.food.readings)
 	}

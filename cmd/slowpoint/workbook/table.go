@@ -248,7 +248,7 @@ func headingUnit(at cell.Ref, typed, inside string, c *Column) (*unit.Unit, *cel
 	case q == &unit.Temperature && (strings.EqualFold(inside, "K") || strings.EqualFold(inside, "kelvin")):
 		e = headingKelvin.problem(at, cell.Fault, c.Heading, typed)
 	default:
-		e = headingUnit_.problem(at, cell.Fault, c.Heading, typed, strconv.Quote(inside), q.Name, q.Listing())
+		e = headingOther.problem(at, cell.Fault, c.Heading, typed, strconv.Quote(inside), q.Name, q.Listing())
 	}
 	return nil, &e
 }
