@@ -23,7 +23,7 @@ const (
 	firstRow   = 3   // of the data
 	ruledRows  = 18  // rows that are ruled, at least
 	listedRows = 500 // rows that have drop-down lists
-	listChars  = 255 // the longest drop-down list that a workbook may hold, in characters (ECMA-376 part 1, 18.3.1.32, formula1 as spreadsheets keep it)
+	listChars  = 255 // characters of the longest drop-down list that excelize writes
 )
 
 // WriteBlank writes a plan workbook to fill in: every sheet with its headings and units, drop-down lists and notes; with demo, the demo

@@ -50,12 +50,10 @@ func Read(name string) (*Plan, error) {
 			return nil, fmt.Errorf("%s: %w", name, err)
 		}
 	}
-	p := &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest, Columns: map[string]map[string]int{}}
-	r := &reader{plan: p, formulas: map[cell.Ref]*formulas{}, unread: map[string]cell.Errors{}}
-	if err := r.sheets(grids); err != nil {
+	p, err := understand(grids, &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest})
+	if err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)
 	}
-	r.read()
 	return p, nil
 }
 
