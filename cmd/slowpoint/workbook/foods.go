@@ -174,10 +174,10 @@ func (f *food) compose() {
 	switch {
 	case errors.As(err, &faults):
 		for _, x := range faults {
-			l.fault(x.Field, "", wordsNotFound, strings.ToUpper(x.Msg[:1])+x.Msg[1:], "", x.Hint)
+			l.fault(x.Field, "", asFound, strings.ToUpper(x.Msg[:1])+x.Msg[1:], x.Hint)
 		}
 	case err != nil:
-		l.fault("", "", wordsNotFound, err.Error(), "", "")
+		l.fault("", "", asFound, err.Error(), "")
 	default:
 		f.material = &m
 	}

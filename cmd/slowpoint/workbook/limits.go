@@ -176,7 +176,7 @@ func (ls *limits) read(l *line) {
 		needs(l, lim.Kind)
 		if l.sound() {
 			for _, f := range lim.Faults() {
-				l.fault(f.Column, l.entry(f.Column).text, wordsNotFound, verb(f.Msg, l.filled(f.Column)), "", f.Hint)
+				l.fault(f.Column, l.entry(f.Column).text, asFound, verb(f.Msg, l.filled(f.Column)), f.Hint)
 			}
 		}
 	} else {
@@ -393,7 +393,7 @@ func clockOf(l *line, lim *rules.Limit) (c rules.Clock) {
 			return c
 		}
 		if m != nil {
-			l.fault("Clock starts", typed, wordsNotFound, "does not name a temperature: "+strconv.Quote(at)+" "+m.Says, "", m.Mend)
+			l.fault("Clock starts", typed, asFound, "does not name a temperature: "+strconv.Quote(at)+" "+m.Says, m.Mend)
 			return c
 		}
 		c.Crossing, c.AtC = true, &v.Computed

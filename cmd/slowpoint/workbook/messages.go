@@ -34,28 +34,31 @@ var (
 	notUTF8       = saying{"The file is not in UTF-8 ({1})", "save it as CSV UTF-8"}
 
 	// rows and cells
-	keyMissing    = saying{"stands in a row without {1} and belongs to nothing", "fill the row, clear it, or put a # in front of the heading if the column is your own"}
-	missing       = saying{"{1} is missing", "{2}"}
-	hiddenRow     = saying{"The row is hidden", "unhide it or delete it; a hidden row is never used and never skipped in silence"}
-	mergedCells   = saying{"The cells {1} are merged", "unmerge them and fill each cell"}
-	notAChoice    = saying{"is not a word of the column {1}{2}", "choose from: {3}"}
-	notAnAnswer   = saying{"is not an answer to the item {1}", "choose from: {2}"}
-	duplicate     = saying{"is there twice; the first is in row {1}", "give each {2} a name of its own"}
-	errorValue    = saying{"is an error of the spreadsheet", "mend the formula or type the value"}
-	noResult      = saying{"The formula in {1} has no stored result", "open the workbook in your spreadsheet program, let it calculate, and save it again; or type the value"}
-	formulaUsed   = saying{"The cell holds a formula; its stored result is used", ""}
-	formulasUsed  = saying{"The cell and {1} more of its column, down to row {2}, hold formulas; their stored results are used", ""}
-	notPositive   = saying{"is not more than 0", "{1} must be more than 0"}
-	negative      = saying{"is less than 0", "{1} must be 0 or more"}
-	notShare      = saying{"is not between 0 and 100 %", "type a percentage from 0 to 100"}
-	notUpToOne    = saying{"is not between 0 and 1", "{1} is more than 0 and at most 1"}
-	belowZeroK    = saying{"is below the absolute zero", "check the number and its unit"}
-	isDate        = saying{"is formatted as a date", "type {1}, and give the cell a number format"}
-	isTime        = saying{"is formatted as a time", "type {1}, and give the cell a number format"}
-	isPercent     = saying{"is formatted as a percentage", "type {1}, and give the cell a number format"}
-	isTruth       = saying{"is a logical value", "type {1}"}
-	decimalMixed  = saying{"shows a decimal {1}, but {2} shows a decimal {3}", "use one decimal sign throughout, or fill the item Decimal sign of the sheet Plan"}
-	wordsNotFound = saying{"{1}{2}", "{3}"}
+	keyMissing   = saying{"stands in a row without {1} and belongs to nothing", "fill the row, clear it, or put a # in front of the heading if the column is your own"}
+	missing      = saying{"{1} is missing", "{2}"}
+	hiddenRow    = saying{"The row is hidden", "unhide it or delete it; a hidden row is never used and never skipped in silence"}
+	mergedCells  = saying{"The cells {1} are merged", "unmerge them and fill each cell"}
+	notAChoice   = saying{"is not a word of the column {1}{2}", "choose from: {3}"}
+	notAnAnswer  = saying{"is not an answer to the item {1}", "choose from: {2}"}
+	duplicate    = saying{"is there twice; the first is in row {1}", "give each {2} a name of its own"}
+	errorValue   = saying{"is an error of the spreadsheet", "mend the formula or type the value"}
+	noResult     = saying{"The formula in {1} has no stored result", "open the workbook in your spreadsheet program, let it calculate, and save it again; or type the value"}
+	formulaUsed  = saying{"The cell holds a formula; its stored result is used", ""}
+	formulasUsed = saying{"The cell and {1} more of its column, down to row {2}, hold formulas; their stored results are used", ""}
+	notPositive  = saying{"is not more than 0", "{1} must be more than 0"}
+	negative     = saying{"is less than 0", "{1} must be 0 or more"}
+	notShare     = saying{"is not between 0 and 100 %", "type a percentage from 0 to 100"}
+	notUpToOne   = saying{"is not between 0 and 1", "{1} is more than 0 and at most 1"}
+	belowZeroK   = saying{"is below the absolute zero", "check the number and its unit"}
+	isDate       = saying{"is formatted as a date", "type {1}, and give the cell a number format"}
+	isTime       = saying{"is formatted as a time", "type {1}, and give the cell a number format"}
+	isPercent    = saying{"is formatted as a percentage", "type {1}, and give the cell a number format"}
+	isTruth      = saying{"is a logical value", "type {1}"}
+	decimalMixed = saying{"shows a decimal {1}, but {2} shows a decimal {3}", "use one decimal sign throughout, or fill the item Decimal sign of the sheet Plan"}
+	asFound      = saying{"{1}", "{2}"} // the words come from model/unit, model/food or rules
+	plainHeading = saying{"is a plain number, without a unit", "write {1} alone"}
+	notNumber    = saying{"is not a number", "type {1}"}
+	notClock     = saying{"is not in the form {1} that the heading announces", "give the cell the number format [h]:mm or [mm]:ss, or change the unit of the heading"}
 
 	// Plan
 	unknownItem = saying{"is not an item of a plan{1}", "items are: {2}"}
@@ -99,6 +102,8 @@ var (
 	faceNone       = saying{"is a face, but the shape {1} has one surface", "take the row out"}
 	faceTwice      = saying{"is there twice for this step; the first is in row {1}", "keep one of the rows"}
 	processRefused = saying{"cannot be calculated: {1}", "{2}"}
+	otherProcess   = saying{"is a product of the process {1}, not of this one", "correct the product or the process"}
+	layersOfOther  = saying{"has layers, but its shape is {1}", "choose the shape layered slab, or take its layers out"}
 	pointCentre    = saying{"is the name of the built-in point at 0, 0, 0", "give the point another name, or type 0 for Up, Across and Along"}
 	pointTwice     = saying{"is there twice for this product; the first is in row {1}", "give each point of a product a name of its own"}
 	pointStirred   = saying{"is a point, but a stirred product has the same temperature everywhere", "take the row out"}

@@ -50,10 +50,12 @@ func Read(name string) (*Plan, error) {
 			return nil, fmt.Errorf("%s: %w", name, err)
 		}
 	}
-	p, err := understand(grids, &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest})
-	if err != nil {
+	p := &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest, Columns: map[string]map[string]int{}}
+	r := &reader{plan: p}
+	if err := r.sheets(grids); err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)
 	}
+	r.read()
 	return p, nil
 }
 
@@ -105,6 +107,7 @@ func (r *reader) formula(at cell.Ref) {
 // sheets sorts the grids out: which sheet of a plan each is, and which decimal sign the whole file shows.
 func (r *reader) sheets(grids []*grid) error {
 	r.grids, r.tables, r.ignore = map[string]*grid{}, map[string]*table{}, map[string]bool{}
+	r.unread, r.formulas = map[string]cell.Errors{}, map[cell.Ref]*formulas{}
 	inOrder := append([]*grid(nil), grids...)
 	sort.SliceStable(inOrder, func(i, j int) bool { // files have no order of their own
 		return grids[0].csv && rank(inOrder[i].name) < rank(inOrder[j].name)
@@ -398,7 +401,7 @@ func (r *reader) notYet() {
 					continue
 				}
 				if p.Shape != nil && p.Shape != model.LayeredSlab {
-					l.fault("Product", name, saying{"has layers, but its shape is {1}", "choose the shape layered slab, or take its layers out"}, p.Shape.Name)
+					l.fault("Product", name, layersOfOther, p.Shape.Name)
 				}
 				l.words("Food")
 				l.number("Layer")

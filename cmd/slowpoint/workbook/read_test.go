@@ -448,7 +448,7 @@ func FuzzSheet(f *testing.F) {
 		b, g, left := &book{strings: []string{"Product"}, forms: []form{bare, clock}}, &grid{name: "Products", hiddenC: map[int]bool{}}, 1000
 		if b.sheet(strings.NewReader(s), g, &left) == nil {
 			plan := &Plan{Columns: map[string]map[string]int{}}
-			r := &reader{plan: plan, formulas: map[cell.Ref]*formulas{}, unread: map[string]cell.Errors{}}
+			r := &reader{plan: plan}
 			if r.sheets([]*grid{g}) == nil {
 				r.read()
 			}
@@ -464,7 +464,7 @@ func FuzzCSV(f *testing.F) {
 	f.Fuzz(func(t *testing.T, products, steps string) {
 		grids := []*grid{csvGrid("Products", []byte(products)), csvGrid("Steps", []byte(steps)), csvGrid("Limits", []byte(steps)), csvGrid("Plan", []byte(products))}
 		plan := &Plan{Columns: map[string]map[string]int{}}
-		r := &reader{plan: plan, formulas: map[cell.Ref]*formulas{}, unread: map[string]cell.Errors{}}
+		r := &reader{plan: plan}
 		if err := r.sheets(grids); err != nil {
 			t.Fatal(err)
 		}

@@ -175,7 +175,7 @@ func (r *reader) stepOfProduct(l *line, pr *process, s *step, name string) {
 		l.fault("Product", name, productUnknown, meant(name, r.productNames()))
 		return
 	case key(p.Process) != key(pr.name):
-		l.fault("Product", name, saying{"is a product of the process {1}, not of this one", "correct the product or the process"}, strconv.Quote(p.Process))
+		l.fault("Product", name, otherProcess, strconv.Quote(p.Process))
 	case p.own[key(s.Name)] != nil:
 		l.fault("Step", s.Name, stepTwice, pr.name+" for this product", strconv.Itoa(p.own[key(s.Name)].At.Row))
 	}
@@ -456,7 +456,7 @@ func (r *reader) hang(l *line, pr *process, s *step, f *face, prodName string) {
 		l.fault("Product", prodName, productUnknown, meant(prodName, r.productNames()))
 		return
 	case key(p.Process) != key(pr.name):
-		l.fault("Product", prodName, saying{"is a product of the process {1}, not of this one", "correct the product or the process"}, strconv.Quote(p.Process))
+		l.fault("Product", prodName, otherProcess, strconv.Quote(p.Process))
 	}
 	for _, o := range p.faces[key(s.Name)] {
 		if f.Face != nil && o.Face == f.Face {

@@ -234,7 +234,7 @@ func headingUnit(at cell.Ref, typed, inside string, c *Column) (*unit.Unit, *cel
 		if inside == "" || inside == "1" || inside == "-" || inside == "–" {
 			return &q.Units[0], nil
 		}
-		e := saying{"is a plain number, without a unit", "write {1} alone"}.problem(at, cell.Fault, c.Heading, typed, c.Heading)
+		e := plainHeading.problem(at, cell.Fault, c.Heading, typed, c.Heading)
 		return nil, &e
 	}
 	var e cell.Error
@@ -542,7 +542,7 @@ func (l *line) convert(heading string, e *entry, c *Column, u *unit.Unit) (unit.
 	if e.kind == text {
 		v, m := q.Parse(e.text, u, l.r.decimal)
 		if m != nil {
-			l.fault(heading, e.text, wordsNotFound, m.Says, "", m.Mend)
+			l.fault(heading, e.text, asFound, m.Says, m.Mend)
 			return v, false
 		}
 		return v, true
@@ -553,7 +553,7 @@ func (l *line) convert(heading string, e *entry, c *Column, u *unit.Unit) (unit.
 	case e.kind == truth:
 		l.fault(heading, e.text, isTruth, expected)
 	case err != nil || math.IsNaN(x) || math.IsInf(x, 0):
-		l.fault(heading, e.text, saying{"is not a number", "type {1}"}, expected)
+		l.fault(heading, e.text, notNumber, expected)
 	case e.form == date:
 		l.fault(heading, isoDate(e.text, l.t.grid.is1904), isDate, expected)
 	case e.form == clock && q != &unit.Duration:
@@ -566,7 +566,7 @@ func (l *line) convert(heading string, e *entry, c *Column, u *unit.Unit) (unit.
 	case e.form == percent && !q.Plain():
 		l.fault(heading, short(x*100)+" %", isPercent, expected)
 	case strings.Contains(u.Name(), ":"):
-		l.fault(heading, e.text, saying{"is not in the form {1} that the heading announces", "give the cell the number format [h]:mm or [mm]:ss, or change the unit of the heading"}, u.Name())
+		l.fault(heading, e.text, notClock, u.Name())
 	default:
 		return u.Of(x, shown(e.text, x)), true
 	}
