@@ -61,6 +61,9 @@ func worstFirst(fs []rules.Finding) []*rules.Finding {
 // decides finds the deciding finding and the place and run that pictures show.
 func (p *Product) decides() *deciding {
 	d := &deciding{history: p.History}
+	if d.history == nil {
+		d.history = &model.History{}
+	}
 	for _, f := range worstFirst(p.Judgement.Findings) {
 		if f.Level == "must" && f.Verdict != rules.NotApplicable {
 			d.finding = f

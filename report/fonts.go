@@ -154,6 +154,15 @@ func shorten(s string, width, size float64, bold bool) string {
 	return strings.TrimSpace(string(r)) + "…"
 }
 
+// capped cuts clean text to a number of lines of a width, mm, and ends it with an ellipsis if something was lost.
+func capped(s string, width, size float64, lines int) string {
+	all := wrap(s, width, size, false)
+	if len(all) <= lines {
+		return s
+	}
+	return strings.Join(append(all[:lines-1:lines-1], shorten(strings.Join(all[lines-1:], " "), width, size, false)), " ")
+}
+
 // unseen collects characters that the font cannot show.
 type unseen map[rune]bool
 

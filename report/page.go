@@ -61,10 +61,12 @@ type doc struct {
 	y      float64 // mm from the top of the page
 	title  string  // running title of the pages to come
 	titles []string
-	begins []int // the pages, counted from 0, on which a part with page numbers of its own begins
+	note   string // of the pages to come: what their numbers are
+	notes  []string
 	unseen unseen
 	whole  [2]bool // whether the whole font has been added, regular and bold
-	low    bool    // drawing below bottomY is meant (signature lines)
+	nest   int     // how deep the bookmarks to come lie below their own level
+	marked int     // the level of the last bookmark; -1: none yet
 }
 
 // newDoc opens a document without a page.
@@ -89,7 +91,7 @@ func newDoc(h *Head, title string) *doc {
 		p.AddUTF8FontFromBytes(family, [2]string{"", "B"}[i], bytes.Clone(b))
 	}
 	w, _ := p.GetPageSize()
-	return &doc{pdf: p, head: h, left: (w - frameWide) / 2, title: title, unseen: unseen{}}
+	return &doc{pdf: p, head: h, left: (w - frameWide) / 2, title: title, note: say("footer not measured"), unseen: unseen{}, marked: -1}
 }
 
 // clean makes text printable and remembers what could not be shown.
@@ -98,7 +100,7 @@ func (d *doc) clean(s string) string { return d.unseen.clean(s) }
 // page begins a new page.
 func (d *doc) page() {
 	d.pdf.AddPage()
-	d.titles = append(d.titles, d.title)
+	d.titles, d.notes = append(d.titles, d.title), append(d.notes, d.note)
 	d.y = topY
 }
 
@@ -176,8 +178,14 @@ func (d *doc) heading(s string, level int, keep float64) {
 		d.y += [...]float64{5, 4, 2.5}[level]
 	}
 	d.need(height(size) + keep)
-	d.pdf.Bookmark(flat(s), level, d.y)
+	d.bookmark(s, level)
 	d.para(s, style{size: size, bold: true, after: [...]float64{2, 1.5, 0.8}[level]})
+}
+
+// bookmark marks the place in the outline, never more than one level below the last.
+func (d *doc) bookmark(s string, level int) {
+	d.marked = min(level+d.nest, d.marked+1)
+	d.pdf.Bookmark(flat(s), d.marked, d.y)
 }
 
 // rule draws a line across from x to x2 at y.
@@ -347,13 +355,15 @@ func (d *doc) boxed(lines []string, st style) {
 	}
 }
 
+// caught turns a panic of the PDF library into an error: one document less, and the others are written.
+func caught(err *error) {
+	if r := recover(); r != nil {
+		*err = fmt.Errorf("PDF: %v", r)
+	}
+}
+
 // finish writes the running titles and page numbers and sends the document.
-func (d *doc) finish(w io.Writer) (err error) {
-	defer func() {
-		if r := recover(); r != nil {
-			err = fmt.Errorf("PDF: %v", r)
-		}
-	}()
+func (d *doc) finish(w io.Writer) error {
 	n := d.pdf.PageCount()
 	for i := 1; i <= n; i++ {
 		d.pdf.SetPage(i)
@@ -378,7 +388,7 @@ func (d *doc) running(i, n int) {
 	d.put(d.left+frameWide-widthMM(number, small, false), footerY+3.6, number, small, false)
 	d.put(d.left, footerY+3.6, shorten(d.clean(say("footer", h.Version, h.digest(), h.day())), 150, small, false), small, false)
 	d.y = footerY
-	note := say("footer not measured")
+	note := d.notes[i-1]
 	if i == 1 && len(d.unseen) > 0 {
 		note = say("glyphs missing", d.unseen.list())
 	}

@@ -148,6 +148,44 @@ func TestProductPDF(t *testing.T) {
 		{"accents, emoji and Chinese", model.Slab, rules.Met, func(h *Head, p *Product) {
 			p.Product.Name = "Crème brûlée Żurek Щи Σούπα 🍗 红烧肉\u0007"
 		}, []string{"Crème brûlée Żurek Щи Σούπα", "U+1F357", "U+70E7", "U+7EA2", "U+8089"}},
+		{"a record", model.Slab, rules.NotMet, func(h *Head, p *Product) {
+			rec := trayProduct(t, "Stew, logged")
+			rec.Lever = "depth 60 mm → 45 mm would meet the limit in the model"
+			*p = *rec
+		}, []string{"Stew, logged", "Measured (the user's own record)", "Nothing in it was calculated", "the measured record", "depth 60 mm → 45 mm"}},
+		{"everything long", model.Slab, rules.NotMet, func(h *Head, p *Product) {
+			long := strings.Repeat("a long name that never seems to end ", 12)
+			p.Product.Name, p.Process, p.Lever = long, long, long
+			p.Note, p.Batch = strings.Repeat("Wort", 300), strings.Repeat(long, 60)
+			for i := range p.Judgement.Findings {
+				f := &p.Judgement.Findings[i]
+				f.Limit.Name, f.Why = f.Limit.Name+" "+long, long
+				f.PlaceName = "14 mm above the underside"
+			}
+			for i := range p.History.Spans {
+				p.History.Spans[i].Step.Name = long
+			}
+			for range 300 {
+				p.Readings = append(p.Readings, cell.Reading{At: cell.Ref{Sheet: "Steps", Row: 3, Col: 2}, Column: "Note", Typed: long, Used: long})
+			}
+		}, []string{"a long name that never seems to end"}},
+		{"twelve steps and forty limits", model.Slab, rules.Met, func(h *Head, p *Product) {
+			p.Steps = append(append(append(p.Steps, p.Steps...), p.Steps...), p.Steps...)
+			var err error
+			if p.History, err = model.Solve(p.Product, p.Steps, model.Options{}); err != nil {
+				t.Fatal(err)
+			}
+			p.Low, p.Samples = nil, p.History.Sample(300)
+			fs := p.Judgement.Findings
+			for i := range 36 {
+				f := fs[i%3]
+				l := *f.Limit
+				l.Name += " " + strings.Repeat("I", i)
+				f.Limit = &l
+				p.Judgement.Findings = append(p.Judgement.Findings, f)
+			}
+		}, []string{"12 steps"}},
+		{"no history", model.Slab, rules.CannotTell, func(h *Head, p *Product) { p.History, p.Low, p.Samples = nil, nil, model.Samples{} }, []string{"CANNOT TELL"}},
 		{"no limits", model.Slab, rules.CannotTell, func(h *Head, p *Product) { p.Judgement = rules.Judgement{Why: "no limit judged"} }, []string{"no limit judged"}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -160,6 +198,9 @@ func TestProductPDF(t *testing.T) {
 				t.Error("the same input gives other bytes")
 			}
 			text := pdfText(t, pdf)
+			if at, next := strings.Index(text, "page 2 of"), strings.Index(text, "Report for the audit"); next > at || strings.Index(text, "page 1 of") > next {
+				t.Error("the page for the kitchen is not exactly page 1")
+			}
 			for _, w := range append(c.want, "Not for canning") {
 				if !strings.Contains(text, w) {
 					t.Errorf("%q is missing", w)
@@ -174,8 +215,15 @@ func TestProductPDF(t *testing.T) {
 	}
 }
 
+// BenchmarkReport writes one product's report of a usual size: about 250 cells of input and 60 known answers.
 func BenchmarkReport(b *testing.B) {
 	h, p := roastHead(), roast(b, model.Slab, rules.NotMet)
+	for len(h.Known) < 60 {
+		h.Known = append(h.Known, h.Known[:2]...)
+	}
+	for len(p.Readings) < 250 {
+		p.Readings = append(p.Readings, p.Readings[:3]...)
+	}
 	b.ReportAllocs()
 	for b.Loop() {
 		var out bytes.Buffer

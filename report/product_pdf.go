@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"slices"
 	"sort"
 	"strings"
 
@@ -14,7 +15,8 @@ import (
 
 // WriteProductPDF writes the report of one product: a page for whoever cooks and probes, then the pages for the auditor.
 // It may run in several goroutines at once.
-func WriteProductPDF(w io.Writer, h *Head, p *Product) error {
+func WriteProductPDF(w io.Writer, h *Head, p *Product) (err error) {
+	defer caught(&err)
 	d := newDoc(h, p.Product.Name)
 	d.product(p)
 	return d.finish(w)
@@ -22,7 +24,10 @@ func WriteProductPDF(w io.Writer, h *Head, p *Product) error {
 
 // product writes all pages of a product.
 func (d *doc) product(p *Product) {
-	d.title = p.Product.Name
+	d.title, d.note = p.Product.Name, say("footer not measured")
+	if p.recorded() {
+		d.note = say("footer measured")
+	}
 	x := &sheet{doc: d, p: p, decides: p.decides(), order: worstFirst(p.Judgement.Findings), cautions: Cautions(d.head, p)}
 	x.operator()
 	x.front()
@@ -44,6 +49,18 @@ type sheet struct {
 	decides  *deciding
 	order    []*rules.Finding // worst first
 	cautions []Caution
+	short    bool // the page for the kitchen is crowded: fewer lines for each thing
+}
+
+// recorded tells whether the product was judged by a measured record.
+func (p *Product) recorded() bool { return p.History != nil && p.History.Recorded }
+
+// source says in what the limits were judged.
+func (x *sheet) source() string {
+	if x.p.recorded() {
+		return say("in record")
+	}
+	return say("in calculation")
 }
 
 // headline is the verdict in one sentence for everybody.
@@ -61,9 +78,9 @@ func (x *sheet) headline() string {
 	room := x.head.room(f)
 	switch {
 	case f.Verdict == rules.Met && room != "":
-		return say("headline met", f.Limit.Name, room)
+		return say("headline met", x.source(), f.Limit.Name, room)
 	case f.Verdict == rules.NotMet && room != "":
-		return say("headline not met", f.Limit.Name, room)
+		return say("headline not met", f.Limit.Name, x.source(), room)
 	}
 	return say("headline plain", f.Limit.Name, f.Verdict.String(), f.Why)
 }
@@ -83,7 +100,12 @@ func (x *sheet) counts() string {
 func (x *sheet) operator() {
 	d, p := x.doc, x.p
 	d.page()
-	d.pdf.Bookmark(flat(say("operator title")), 0, d.y)
+	if d.nest > 0 { // one of several: everything of it below its name
+		d.nest--
+		d.bookmark(p.Product.Name, 0)
+		d.nest++
+	}
+	d.bookmark(say("operator title"), 0)
 	size, name := 24.0, d.clean(p.Product.Name)
 	lines := wrap(name, frameWide, size, true)
 	if len(lines) > 2 {
@@ -101,7 +123,12 @@ func (x *sheet) operator() {
 		d.para(shorten(d.clean(say("operator process", p.Process, len(p.History.Spans), duration(p.History.EndS(), nearest))), frameWide, kitchen, false), style{size: kitchen, after: 2})
 	}
 	x.verdictBox()
-	x.operatorChart(x.advice(true))
+	below := x.advice(true)
+	if bottomY-d.y-below < 4*height(kitchen)+45 {
+		x.short = true
+		below = x.advice(true)
+	}
+	x.operatorChart(below)
 	x.advice(false)
 }
 
@@ -130,8 +157,8 @@ func (x *sheet) operatorChart(below float64) {
 		return
 	}
 	d := x.doc
-	sentence := x.slowestSentence()
-	lines := wrap(d.clean(sentence), frameWide, kitchen, false)
+	sentence := capped(d.clean(x.slowestSentence()), frameWide, kitchen, 4)
+	lines := wrap(sentence, frameWide, kitchen, false)
 	h := min(max(bottomY-d.y-below-float64(len(lines))*height(kitchen)-3, 40), 86)
 	d.head.history(x.p, x.decides, kitchen, 92, false).draw(d.canvas(d.left, d.y, frameWide, h))
 	d.y += h + 1
@@ -182,14 +209,13 @@ func (x *sheet) checks() []string {
 	var due []*rules.Finding
 	seen := map[string]bool{}
 	for _, f := range x.order {
-		if f.Limit == nil || f.Level != "must" || f.Verdict == rules.NotApplicable || f.Place == nil && f.AtS == nil || seen[f.Limit.Name] {
+		if f.Limit == nil || f.Level != "must" || f.Verdict == rules.NotApplicable || f.Place == nil || seen[f.Limit.Name] {
 			continue
 		}
 		seen[f.Limit.Name] = true
-		if due = append(due, f); len(due) == 3 {
-			break
-		}
+		due = append(due, f)
 	}
+	due = distinct(due, 3)
 	sort.SliceStable(due, func(i, j int) bool { return instant(due[i]) < instant(due[j]) })
 	var out []string
 	for _, f := range due {
@@ -201,10 +227,33 @@ func (x *sheet) checks() []string {
 		if finite(f.AtS) {
 			when = say("check at", duration(*f.AtS, nearest), x.stepAt(*f.AtS))
 		}
-		out = append(out, say("check", when, place, x.head.plainly(f.Limit)))
+		line := capped(x.clean(say("check", when, place, x.head.plainly(f.Limit))), frameWide-widthMM("1.  ", kitchen, false), kitchen, 3-btoi(x.short))
+		if !slices.Contains(out, line) {
+			out = append(out, line)
+		}
 	}
 	if len(out) == 0 {
 		out = append(out, say("check nothing"))
+	}
+	return out
+}
+
+// distinct keeps the first n findings that differ in what is asked, where and when.
+func distinct(fs []*rules.Finding, n int) []*rules.Finding {
+	var out []*rules.Finding
+	seen := map[string]bool{}
+	for _, f := range fs {
+		l := f.Limit
+		key := fmt.Sprint(f.PlaceName, math.Round(instant(f)), l.Kind)
+		for _, v := range []*float64{l.FromC, l.ToC, l.TimeS} {
+			if v != nil {
+				key += fmt.Sprint(" ", *v)
+			}
+		}
+		if !seen[key] && len(out) < n {
+			seen[key] = true
+			out = append(out, f)
+		}
 	}
 	return out
 }
@@ -234,8 +283,12 @@ func (x *sheet) advice(dry bool) float64 {
 	if lever == "" {
 		lever = say("lever none")
 	}
+	lever = capped(d.clean(lever), frameWide, kitchen, 4-2*btoi(x.short))
 	checks := x.checks()
 	foot := say("operator decides")
+	if x.p.recorded() {
+		foot = say("operator decides record")
+	}
 	for _, f := range x.order {
 		if f.Limit != nil && bare(f.Limit) && f.Verdict != rules.NotApplicable {
 			foot += say("operator uncited")

@@ -8,16 +8,19 @@ import (
 )
 
 // WriteSummaryPDF writes the overview of a plan: one line a product, the tightest first. Thousands of rows are fine.
-func WriteSummaryPDF(w io.Writer, h *Head, rows []Row) error {
+func WriteSummaryPDF(w io.Writer, h *Head, rows []Row) (err error) {
+	defer caught(&err)
 	d := newDoc(h, say("summary title"))
 	d.summary(rows)
 	return d.finish(w)
 }
 
 // OnePDF writes the overview and every product in one document. each hands over the products one by one and stops at an error.
-func OnePDF(w io.Writer, h *Head, rows []Row, each func(func(*Product) error) error) error {
+func OnePDF(w io.Writer, h *Head, rows []Row, each func(func(*Product) error) error) (err error) {
+	defer caught(&err)
 	d := newDoc(h, say("summary title"))
 	d.summary(rows)
+	d.nest = 1
 	if err := each(func(p *Product) error {
 		d.product(p)
 		return d.pdf.Error()
