@@ -9,7 +9,11 @@ func judgeFreeze(v *view) Finding {
 	l := v.l
 	q := question{unit: "min", need: *l.SecondS / 60}
 	q.measure = func(p path, t tilt) outcome {
-		o := none(NotMet, "freeze first")
+		first, second := "freeze first", "freeze"
+		if *l.TimeS == 0 {
+			first, second = "freeze never", "freeze at once"
+		}
+		o := none(NotMet, first)
 		o.value, o.bad = 0, 0
 		o.margin = -*l.SecondS
 		for n, iv := range v.stages {
@@ -19,7 +23,7 @@ func judgeFreeze(v *view) Finding {
 				continue
 			}
 			held := v.after(p, n, done, l.coldSide(*l.ToC-t.errK-t.ownK))
-			o.word = "freeze"
+			o.word = second
 			o.value, o.bad, o.margin = held.s/60, -held.s/60, held.s-*l.SecondS
 			o.start, o.end, o.at = done, held.to, held.to
 			o.holes = holes{"value": lasting(held.s, -1)}

@@ -215,13 +215,14 @@ func TestWords(t *testing.T) {
 		want string
 	}{
 		{"as typed", Limit{Kind: Hold, FromC: f(130), TimeS: c(7200), Counting: Total, Typed: typed}, record(t, "cook 0-200", "0:55 112.39:55 112.39001:20 200:20"),
-			"The slowest place (centre) stayed at or above 130 °F for 112.3 min of the 2 h needed."},
+			"The slowest place (centre) stayed at or above 130 °F for 112.3 min, and 2 h is needed."},
 		{"seconds", Limit{Kind: Hold, FromC: c(74), TimeS: c(15), Counting: Total, Where: Where{"centre"}}, record(t, "cook 0-60", "0:74 0.2:74 0.2001:20 60:20"),
-			"The centre stayed at or above 74 °C for 12 s of the 0.25 min needed."},
+			"The centre stayed at or above 74 °C for 12 s, and 0.25 min is needed."},
 		{"cooling, rounded up", Limit{Kind: CoolWithin, FromC: f(130), ToC: f(70), TimeS: c(7200), Clock: crossing, Typed: typed}, record(t, "cook 0-60, cool 60-400", "0:5 60:60 70:54.44444444444444 190.01:21.11111111111111 400:5"),
 			"The slowest place (centre) took 120.1 min from 130 °F to 70 °F, and 2 h is allowed."},
-		{"cold, rounded up", Limit{Kind: StayBelow, ToC: c(8)}, record(t, "store 0-60", "0:5 60:8.01"), "The least favourable place (centre) rose to 8.1 °C, and 8 °C must be kept."},
-		{"hot, rounded down", Limit{Kind: StayAbove, FromC: c(63)}, record(t, "hold hot 0-60", "0:70 60:62.99"), "The least favourable place (centre) fell to 62.9 °C, and 63 °C must be kept."},
+		{"less than", Limit{Kind: Band, FromC: c(5), ToC: c(60), TimeS: min_(240), Counting: Total, CompareTime: LessThan}, record(t, "store 0-300", "0:20 240:20 240.001:3 300:3"), "The least favourable place (centre) was between 5 °C and 60 °C for 240.1 min, and less than 240 min is allowed."},
+		{"cold, rounded up", Limit{Kind: StayBelow, ToC: c(8)}, record(t, "store 0-60", "0:5 60:8.01"), "The least favourable place (centre) rose to 8.1 °C, and at most 8 °C must be kept."},
+		{"hot, rounded down", Limit{Kind: StayAbove, FromC: c(63)}, record(t, "hold hot 0-60", "0:70 60:62.99"), "The least favourable place (centre) fell to 62.9 °C, and at least 63 °C must be kept."},
 	} {
 		if got := one(t, x.l, x.h).Why; got != x.want {
 			t.Errorf("%s:\n%s\n%s", x.name, got, x.want)

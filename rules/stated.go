@@ -11,7 +11,7 @@ var Stated = &Kind{Name: "stated", May: []string{"Answer", "Stage"},
 
 func judgeStated(v *view) Finding {
 	a := strings.TrimSpace(v.l.Answer)
-	h := holes{"answer": a}
+	h := holes{"answer": strings.TrimRight(a, ".")}
 	first := strings.ToLower(a)
 	if i := strings.IndexFunc(first, func(r rune) bool { return !unicode.IsLetter(r) }); i >= 0 {
 		first = first[:i]

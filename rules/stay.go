@@ -34,7 +34,8 @@ func judgeStay(v *view, sign float64) Finding {
 		}
 		o.value, o.at, o.bad = c, at, -sign*c
 		if !t.rank {
-			o.holes = holes{"value": degrees(c, int(-sign))}
+			own := l.own()
+			o.holes = holes{"value": degrees(c, int(-sign)), "level": l.operator(sign < 0) + own["bare"]}
 		}
 		if kept.holds(c) {
 			o.verdict = Met

@@ -119,6 +119,43 @@ func TestWindowStage(t *testing.T) {
 	}
 }
 
+// TestEndedStage: what has not happened when the named stage ends can no longer happen in it, although time is left.
+func TestEndedStage(t *testing.T) {
+	for _, x := range []struct {
+		name          string
+		l             Limit
+		spans, course string
+		want          Verdict
+		says          string
+	}{
+		{"cool: still warm at the end of the chain", Limit{Kind: CoolWithin, ToC: c(10), TimeS: min_(900), Clock: after(model.Cook), Stages: st(model.Cool)}, "cook 0-60, cool 60-160, store 160-400", "0:5 60:80 160:40 400:20", NotMet, "stage cool ended"},
+		{"cool: the same without a stage", Limit{Kind: CoolWithin, ToC: c(10), TimeS: min_(900), Clock: after(model.Cook)}, "cook 0-60, cool 60-160, store 160-400", "0:5 60:80 160:40 400:20", CannotTell, "history ended"},
+		{"heat: reached while resting", Limit{Kind: HeatWithin, ToC: c(75), TimeS: min_(120), Clock: fromStart(model.Reheat), Stages: st(model.Reheat)}, "reheat 0-60, rest 60-100", "0:5 60:74 70:75 100:76", NotMet, "stage reheat ended"},
+		{"heat: reached in the stage", Limit{Kind: HeatWithin, ToC: c(75), TimeS: min_(120), Clock: fromStart(model.Reheat), Stages: st(model.Reheat)}, "reheat 0-60, rest 60-100", "0:5 59:75 60:76 100:76", Met, ""},
+		{"heat: never reached", Limit{Kind: HeatWithin, ToC: c(75), TimeS: min_(120), Clock: fromStart(model.Reheat), Stages: st(model.Reheat)}, "reheat 0-60, rest 60-100", "0:5 60:70 100:60", NotMet, "stage reheat ended"},
+		{"heat: never reached, time run out", Limit{Kind: HeatWithin, ToC: c(75), TimeS: min_(90), Clock: fromStart(model.Reheat)}, "reheat 0-60, rest 60-100", "0:5 60:70 100:60", NotMet, "after 100 min"},
+		{"heat: from the crossing of 5 °C", Limit{Kind: HeatWithin, FromC: c(5), ToC: c(75), TimeS: min_(60), Clock: crossing}, "reheat 0-100", "0:3 30:5 89:75 100:75", Met, "59 min"},
+		{"heat: warmer than that from the start", Limit{Kind: HeatWithin, FromC: c(5), ToC: c(75), TimeS: min_(60), Clock: crossing}, "reheat 0-100", "0:8 61:75 100:75", NotMet, "61 min"},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			if got := one(t, x.l, record(t, x.spans, x.course)); got.Verdict != x.want || !strings.Contains(got.Why, x.says) {
+				t.Errorf("%v, want %v: %s", got.Verdict, x.want, got.Why)
+			}
+		})
+	}
+}
+
+// TestInstants of kinds whose clock is found in the course.
+func TestInstants(t *testing.T) {
+	rise := one(t, Limit{Kind: Falling, Stages: st(model.Cool), AllowanceK: c(0.5)}, record(t, "cool 0-100", "0:60 20:40 25:41 100:5"))
+	closeTo(t, "start of the rise", rise.ClockStartS, 20*60, 1e-9)
+	closeTo(t, "end of the rise", rise.ClockEndS, 25*60, 1e-9)
+	frozen := one(t, Limit{Kind: FreezeHold, FromC: c(-35), TimeS: min_(10), ToC: c(-20), SecondS: min_(60)}, record(t, "freeze 0-300", "0:5 40:-35 60:-35 100:-30 150:-20 200:0 300:0"))
+	closeTo(t, "first phase done", frozen.ClockStartS, 50*60, 1e-6)
+	closeTo(t, "second phase over", frozen.ClockEndS, 150*60, 1e-6)
+	closeTo(t, "second phase", frozen.Value, 100, 1e-9)
+}
+
 // TestEveryPoint judges each place by its own course: the coldest-anywhere envelope would miss the hold here.
 func TestEveryPoint(t *testing.T) {
 	h := records(t, "cook 0-60", trace(t, "centre", 0, "0:5 30:63 50:63 60:40"), trace(t, "surface", 30, "0:5 10:63 31:63 40:30 60:20"))

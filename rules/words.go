@@ -28,16 +28,16 @@ var words = map[string]string{
 	"bound":               "; but from {at} on the temperatures are only bounds ({bound}), so it cannot be told.",
 	"sparse":              "; but the readings there are {gap} apart and cannot show {time}, so it cannot be told.",
 
-	"hold above":      "{who} stayed at or above {from} for {value} of the {time} needed.",
-	"hold below":      "{who} stayed at or below {to} for {value} of the {time} needed.",
-	"hold again":      "{who} was there for more than one period ({count}), and the limit allows one only; the first lasted {value} of the {time} needed.",
-	"reached above":   "{who} got no warmer than {value} against {from} to be reached.",
-	"reached below":   "{who} got no colder than {value} against {to} to be reached.",
-	"table met":       "{who} met the row {row} of the table {table}: it stayed there for {value} of the {need} needed.",
-	"table missed":    "{who} met no row of the table {table}; the nearest row is {row}, with {value} of the {need} needed.",
+	"hold above":      "{who} stayed at or above {from} for {value}, and {time} is needed.",
+	"hold below":      "{who} stayed at or below {to} for {value}, and {time} is needed.",
+	"hold again":      "{who} was there for more than one period ({count}), and the limit allows one only; the first lasted {value}, and {time} is needed.",
+	"reached above":   "{who} reached {value}, and {level} must be reached.",
+	"reached below":   "{who} came down to {value}, and {level} must be reached.",
+	"table met":       "{who} met the row {row} of the table {table}: it stayed there for {value}, and {need} is needed.",
+	"table missed":    "{who} met no row of the table {table}; the nearest row is {row}, which it kept for {value}, and {need} is needed.",
 	"table instant":   "{who} reached {row}, a row of the table {table} that is met at once.",
-	"lethality time":  "{who} earned a lethality of {value} min equivalent at {ref} of the {time} needed.",
-	"lethality logs":  "{who} earned a lethality of {value} of the {logs} log reductions needed.",
+	"lethality time":  "{who} earned a lethality of {value} min equivalent at {ref}, and {time} is needed.",
+	"lethality logs":  "{who} earned a lethality of {value} log reductions, and {logs} are needed.",
 	"cool closed":     "{who} took {value} from {start} to {to}, and {time} is allowed.",
 	"cool at once":    "{who} was at or below {to} when the clock started.",
 	"cool late":       "{who} was still above {to} after {value} from {start}, and {time} is allowed.",
@@ -55,25 +55,27 @@ var words = map[string]string{
 	"band again":      "{who} was between {from} and {to} more than once ({count} periods), and the limit allows one only.",
 	"stay above":      "{who} fell to {value}, and {level} must be kept.",
 	"stay below":      "{who} rose to {value}, and {level} must be kept.",
-	"out above":       "{who} was below {level} for {value}, and {time} is allowed.",
-	"out below":       "{who} was above {level} for {value}, and {time} is allowed.",
-	"out again":       "{who} was out of the limit {level} more than once ({count} periods), and the limit allows one only.",
+	"out above":       "{who} was below {bare} for {value}, and {time} is allowed.",
+	"out below":       "{who} was above {bare} for {value}, and {time} is allowed.",
+	"out again":       "{who} was beyond {bare} more than once ({count} periods), and the limit allows one only.",
 	"outside":         "{who} was between {from} and {to} for {value}, and no time there is allowed.",
 	"outside touch":   "{who} touched {from} or {to}, and the limit does not allow that.",
 	"outside never":   "{who} was never between {from} and {to}.",
-	"end above":       "{who} was at {value} at {when}, and at least {level} is needed.",
-	"end below":       "{who} was at {value} at {when}, and at most {level} is allowed.",
+	"end above":       "{who} was at {value} at {when}, and {level} is needed.",
+	"end below":       "{who} was at {value} at {when}, and {level} is needed.",
 	"end open":        "The history ended before {when}, so it cannot be told.",
 	"end nowhere":     "The clock of this limit never started, so the limit does not apply.",
 	"delay":           "{value} passed from the end of {first} to the start of {second}, and {time} is allowed.",
 	"delay late":      "The stage {second} had not started {value} after the end of {first}, and {time} is allowed.",
 	"delay open":      "The stage {second} had not started when the history ended, {value} after the end of {first}, and {time} is allowed, so it cannot be told.",
-	"duration least":  "The {stage} lasted {value} of the {time} needed.",
+	"duration least":  "The {stage} lasted {value}, and {time} is needed.",
 	"duration most":   "The {stage} lasted {value}, and {time} is allowed.",
 	"falling":         "{who} rose by {value}, and {allowance} is allowed.",
-	"freeze":          "{who} was at or below {to} for {value} of the {second} needed, after {time} at or below {from}.",
+	"freeze":          "{who} was at or below {to} for {value} after {time} at or below {from}, and {second} is needed.",
 	"freeze first":    "{who} was never at or below {from} for {time}, so the second phase did not begin.",
-	"humidity":        "The stated relative humidity met {humidity} for {value} of the {need} needed.",
+	"freeze at once":  "{who} was at or below {to} for {value} after it had come to {from}, and {second} is needed.",
+	"freeze never":    "{who} never came to {from}, so the second phase did not begin.",
+	"humidity":        "The stated relative humidity met {humidity} for {value}, and {need} is needed.",
 	"humidity open":   "The relative humidity is not stated for the whole of the stages, so it cannot be told.",
 	"stated blank":    "Only you can answer this, and the answer is blank, so it cannot be told.",
 	"stated yes":      "Answered: {answer}.",
@@ -83,7 +85,7 @@ var words = map[string]string{
 	"who every":  "The least favourable place ({place})",
 	"who slow":   "The slowest place ({place})",
 	"who named":  "The {place}",
-	"who medium": "The surroundings",
+	"who medium": "The medium",
 
 	"note again":     "Rose above {temp} again at {when}; the clock does not start anew.",
 	"note heatings":  "The process has {count} heatings separated by chilling; each is judged on its own, and the best counts.",
@@ -178,12 +180,31 @@ func (l *Limit) own() holes {
 	put("humidity", "Humidity", l.HumidityPc, 1, "%")
 	put("logs", "Log reductions", l.Logs, 1, "")
 	h["logs"] = strings.TrimSpace(h["logs"])
+	h["bare"] = h["to"]
 	if l.FromC != nil {
-		h["level"] = h["from"]
-	} else {
-		h["level"] = h["to"]
+		h["bare"] = h["from"]
+	}
+	h["level"] = l.operator(l.FromC == nil) + h["bare"]
+	switch l.CompareTime {
+	case MoreThan:
+		h["time"] = "more than " + h["time"]
+	case LessThan:
+		h["time"] = "less than " + h["time"]
 	}
 	return h
+}
+
+// operator words how the limit's temperature is compared, given its side.
+func (l *Limit) operator(cold bool) string {
+	switch {
+	case cold && l.Compare == LessThan:
+		return "less than "
+	case cold:
+		return "at most "
+	case l.Compare == MoreThan:
+		return "more than "
+	}
+	return "at least "
 }
 
 // sentence words a finding about places.
