@@ -2,14 +2,11 @@ package workbook
 
 import (
 	"bytes"
-	"crypto/sha256"
 	"encoding/csv"
-	"encoding/hex"
 	"errors"
 	"fmt"
 	"io"
 	"os"
-	"path/filepath"
 	"sort"
 	"strings"
 	"unicode/utf8"
@@ -25,39 +22,8 @@ const (
 	lastRow     = 1_048_576 // of a spreadsheet
 )
 
-// readFolder takes every .csv file of a folder as a sheet, in the order of their names, and the digest of them all.
-func readFolder(folder string) ([]*grid, string, error) {
-	list, err := os.ReadDir(folder)
-	if err != nil {
-		return nil, "", fmt.Errorf("the folder %s cannot be read: %v", folder, reason(err))
-	}
-	sum := sha256.New()
-	var grids []*grid
-	total := int64(0)
-	for _, f := range list { // sorted by name
-		ext := filepath.Ext(f.Name())
-		if f.IsDir() || !strings.EqualFold(ext, ".csv") || strings.HasPrefix(f.Name(), ".") {
-			continue
-		}
-		path := filepath.Join(folder, f.Name())
-		if info, err := os.Stat(path); err == nil {
-			if total += info.Size(); total > mostBytes {
-				return nil, "", fmt.Errorf("the folder %s holds more than %d MB of CSV; divide the plan into several", folder, mostBytes>>20)
-			}
-		}
-		data, err := os.ReadFile(path)
-		if err != nil {
-			return nil, "", fmt.Errorf("%s cannot be read: %v", path, reason(err))
-		}
-		fmt.Fprintf(sum, "%s %d\n", f.Name(), len(data))
-		sum.Write(data)
-		grids = append(grids, csvGrid(strings.TrimSuffix(f.Name(), ext), data))
-	}
-	if len(grids) == 0 {
-		return nil, "", fmt.Errorf("the folder %s holds no .csv file; a plan is a workbook, or a folder with Products.csv, Steps.csv and the other sheets", folder)
-	}
-	return grids, hex.EncodeToString(sum.Sum(nil)), nil
-}
+// readFolder reads the sheets of a folder.
+func readFolder(folder string) ([]*grid, string, error) { return readFiles(os.DirFS(folder), folder) }
 
 // reason is the plain cause of a failed file operation.
 func reason(err error) string {
