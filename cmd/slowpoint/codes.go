@@ -27,10 +27,12 @@ func codesCommand() *cobra.Command {
 			if len(found) == 0 {
 				return &failure{exitInput, fmt.Errorf("no starter limit matches --where %q --stage %q", where, stage)}
 			}
-			fmt.Fprintf(out, "%s. %s\nCopy with: slowpoint codes copy ID PLAN.xlsx\n", count(len(found), "starter limit"), confirm)
+			fmt.Fprintf(out, "%s. %s\nCopy with: slowpoint codes copy ID... PLAN.xlsx\n", count(len(found), "starter limit"), confirm)
 			return nil
 		},
 	}
+	cmd.AddCommand(codesCopyCommand())
+	cmd.AddCommand(codesCopyCommand())
 	cmd.Flags().StringVar(&where, "where", "", "part of a jurisdiction, issuer or document")
 	cmd.Flags().StringVar(&stage, "stage", "", "stage: cook, cool, hold hot, …")
 	return cmd

@@ -1,0 +1,70 @@
+package main
+
+import (
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+	"strings"
+
+	"github.com/spf13/cobra"
+
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/rules/codes"
+)
+
+func codesCopyCommand() *cobra.Command {
+	return &cobra.Command{
+		Use: "copy ID… PLAN.xlsx", Short: "Write a new workbook beside the plan, with starter limits added",
+		Example: "  slowpoint codes copy US-FC22-501.14-A1 plan.xlsx", Args: cobra.MinimumNArgs(2),
+		RunE: func(cmd *cobra.Command, args []string) error {
+			ids, plan := args[:len(args)-1], args[len(args)-1]
+			rows, err := codes.ByID(ids...)
+			if err != nil {
+				return &failure{exitInput, err}
+			}
+			ext := filepath.Ext(plan)
+			target := strings.TrimSuffix(plan, ext) + "-with-limits" + ext
+			if err := newFile(target); err != nil {
+				return err
+			}
+			if _, err := os.Stat(plan); err != nil {
+				return &failure{exitInput, fmt.Errorf("%s cannot be read: %w", plan, err)}
+			}
+			var notCarried []string
+			var refused error
+			err = writeWhole(target, func(w io.Writer) error {
+				notCarried, refused = workbook.CopyRows(sheetRows(rows), plan, w)
+				return refused
+			})
+			if refused != nil {
+				return &failure{exitInput, refused}
+			}
+			if err != nil {
+				return &failure{exitFault, err}
+			}
+			out := cmd.OutOrStdout()
+			fmt.Fprintf(out, "%s: %s added\n", target, count(len(rows), "limit"))
+			for _, n := range notCarried {
+				fmt.Fprintf(out, "not carried over: %s\n", n)
+			}
+			fmt.Fprintln(out, confirm)
+			return nil
+		},
+	}
+}
+
+// sheetRows lays starter limits out as rows of a plan's sheets.
+func sheetRows(rows []codes.Row) workbook.Rows {
+	out := workbook.Rows{}
+	for i := range rows {
+		out["Limits"] = append(out["Limits"], rows[i].Cells)
+		for _, g := range rows[i].Groups {
+			out["Groups"] = append(out["Groups"], map[string]string{"Group": g.Group, "Join": g.Join, "Within": g.Within})
+		}
+		for _, t := range rows[i].Tables {
+			out["Tables"] = append(out["Tables"], map[string]string{"Table": t.Table, "Temperature": t.Temperature, "Time": t.Time})
+		}
+	}
+	return out
+}
