@@ -50,12 +50,10 @@ func Read(name string) (*Plan, error) {
 			return nil, fmt.Errorf("%s: %w", name, err)
 		}
 	}
-	p := &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest, Columns: map[string]map[string]int{}}
-	r := &reader{plan: p}
-	if err := r.sheets(grids); err != nil {
+	p, err := understand(grids, &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest})
+	if err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)
 	}
-	r.read()
 	return p, nil
 }
 
@@ -107,7 +105,6 @@ func (r *reader) formula(at cell.Ref) {
 // sheets sorts the grids out: which sheet of a plan each is, and which decimal sign the whole file shows.
 func (r *reader) sheets(grids []*grid) error {
 	r.grids, r.tables, r.ignore = map[string]*grid{}, map[string]*table{}, map[string]bool{}
-	r.unread, r.formulas = map[string]cell.Errors{}, map[cell.Ref]*formulas{}
 	inOrder := append([]*grid(nil), grids...)
 	sort.SliceStable(inOrder, func(i, j int) bool { // files have no order of their own
 		return grids[0].csv && rank(inOrder[i].name) < rank(inOrder[j].name)

@@ -447,11 +447,7 @@ func FuzzSheet(f *testing.F) {
 	f.Fuzz(func(t *testing.T, s string) {
 		b, g, left := &book{strings: []string{"Product"}, forms: []form{bare, clock}}, &grid{name: "Products", hiddenC: map[int]bool{}}, 1000
 		if b.sheet(strings.NewReader(s), g, &left) == nil {
-			plan := &Plan{Columns: map[string]map[string]int{}}
-			r := &reader{plan: plan}
-			if r.sheets([]*grid{g}) == nil {
-				r.read()
-			}
+			understand([]*grid{g}, &Plan{})
 		}
 	})
 }
@@ -463,12 +459,10 @@ func FuzzCSV(f *testing.F) {
 	f.Add("\xff\xfeP", "")
 	f.Fuzz(func(t *testing.T, products, steps string) {
 		grids := []*grid{csvGrid("Products", []byte(products)), csvGrid("Steps", []byte(steps)), csvGrid("Limits", []byte(steps)), csvGrid("Plan", []byte(products))}
-		plan := &Plan{Columns: map[string]map[string]int{}}
-		r := &reader{plan: plan}
-		if err := r.sheets(grids); err != nil {
+		plan, err := understand(grids, &Plan{})
+		if err != nil {
 			t.Fatal(err)
 		}
-		r.read()
 		for _, e := range plan.Problems {
 			if strings.TrimSpace(e.Msg) == "" {
 				t.Fatalf("a problem without words at %s", e.At)
