@@ -85,6 +85,7 @@ func scaleOf(fs []*rules.Finding, of func(*rules.Finding) *float64) scale {
 
 // bar draws one bar: full if met, hatched if not met, empty if it cannot be told.
 func (d *doc) bar(x, y, h float64, v *float64, s scale, verdict rules.Verdict, write func(float64) string) {
+	d.forget()
 	x++
 	span := barPanel - barRoom - 2
 	zero := x + span*(-s.lo)/(s.hi-s.lo)

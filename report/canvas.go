@@ -35,6 +35,7 @@ type pen struct {
 
 // canvas opens an area of the current page; top is the distance from the top of the page, mm.
 func (d *doc) canvas(left, top, w, h float64) *canvas {
+	d.forget()
 	return &canvas{pdf: d.pdf, clean: d.clean, left: left, floor: top + h, w: w, h: h,
 		now: pen{m: [6]float64{1, 0, 0, 1, 0, 0}, width: 1, color: color.NRGBA{A: 255}}}
 }

@@ -64,9 +64,24 @@ type doc struct {
 	note   string // of the pages to come: what their numbers are
 	notes  []string
 	unseen unseen
+	letter lettering
+	stroke stroke
 	whole  [2]bool // whether the whole font has been added, regular and bold
 	nest   int     // how deep the bookmarks to come lie below their own level
 	marked int     // the level of the last bookmark; -1: none yet
+}
+
+// lettering is the font that was last set on a page, so that it is not set again for each word.
+type lettering struct {
+	page       int
+	fam, style string
+	size       float64
+}
+
+// stroke is the line that was last set on a page.
+type stroke struct {
+	page int
+	pt   float64
 }
 
 // newDoc opens a document without a page.
@@ -127,8 +142,12 @@ func (d *doc) put(x, y float64, s string, size float64, bold bool) {
 			break
 		}
 	}
-	d.pdf.SetFont(fam, style, size)
-	d.pdf.SetTextColor(0, 0, 0)
+	if f := (lettering{d.pdf.PageNo(), fam, style, size}); f != d.letter {
+		d.pdf.SetFont(fam, style, size)
+		d.pdf.SetFillColor(0, 0, 0) // as the text: then the library leaves the colour alone
+		d.pdf.SetTextColor(0, 0, 0)
+		d.letter = f
+	}
 	d.pdf.Text(x, y, s)
 }
 
@@ -190,14 +209,21 @@ func (d *doc) bookmark(s string, level int) {
 
 // rule draws a line across from x to x2 at y.
 func (d *doc) rule(x, x2, y, pt float64) {
-	d.pdf.SetDrawColor(0, 0, 0)
-	d.pdf.SetLineWidth(pt * mmPerPt)
-	d.pdf.SetDashPattern(nil, 0)
+	if s := (stroke{d.pdf.PageNo(), pt}); s != d.stroke {
+		d.pdf.SetDrawColor(0, 0, 0)
+		d.pdf.SetLineWidth(pt * mmPerPt)
+		d.pdf.SetDashPattern(nil, 0)
+		d.stroke = s
+	}
 	d.pdf.Line(x, y, x2, y)
 }
 
+// forget is for whoever sets fonts, lines or colours without put and rule: both then set their own again.
+func (d *doc) forget() { d.letter, d.stroke = lettering{}, stroke{} }
+
 // frame draws a box.
 func (d *doc) frame(x, y, w, h, pt float64) {
+	d.forget()
 	d.pdf.SetDrawColor(0, 0, 0)
 	d.pdf.SetLineWidth(pt * mmPerPt)
 	d.pdf.SetDashPattern(nil, 0)
@@ -367,8 +393,7 @@ func (d *doc) finish(w io.Writer) error {
 	n := d.pdf.PageCount()
 	for i := 1; i <= n; i++ {
 		d.pdf.SetPage(i)
-		d.pdf.SetFont(family, "", 1) // the last page's font and colour are not this page's
-		d.pdf.SetFillColor(255, 255, 255)
+		d.forget() // what the last page had set is not set here
 		d.running(i, n)
 	}
 	return d.pdf.Output(w)

@@ -10,6 +10,7 @@ import (
 // sketch draws the section of a product with the slowest place marked; it takes height mm of the page.
 func (d *doc) sketch(p *model.Product, at model.Place, name string, h float64) {
 	d.need(h)
+	defer d.forget()
 	s := section{d: d, p: p, at: at, name: name, x: d.left, y: d.y, h: h, x0: d.left}
 	switch p.Shape {
 	case model.Cylinder, model.Sphere:
