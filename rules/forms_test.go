@@ -85,7 +85,7 @@ var forms = []form{
 		{"158 °F at once", "cook 0-60", "0:5 30:71 60:5", Met},
 		{"11 min at 140 °F", "cook 0-60", "0:5 20:60.1 30:60.1 31:50 60:40", NotMet},
 		{"no row below the first: hours at 129 °F", "cook 0-600", "0:53.9 600:53.9", NotMet}}},
-	{"A4 table with a second key: FSIS poultry, chicken of 1 % fat; the user copies the column", []Limit{{Kind: HoldTable, Stages: st(model.Cook), Counting: Total, Table: fahrenheit(140, 25.2, 150, 2.7, 160, 0.2)}}, nil, []told{
+	{"A4 table with a second key: FSIS poultry, chicken of 1 % fat; the user copies the column", []Limit{{Kind: HoldTable, Stages: st(model.Cook), Counting: Total, Table: fahrenheit(140, 25.2, 150, 2.7, 160, 13.7/60)}}, nil, []told{
 		{"150 °F for 3 min", "cook 0-60", "0:5 30:65.6 33:65.6 60:20", Met}, {"150 °F for 2 min", "cook 0-60", "0:5 30:65.6 31:65.6 32:40 60:20", NotMet}}},
 	{"A5 integral: 70 °C, 2 min, z 7.5", []Limit{{Kind: Lethality, Stages: st(model.Cook), ReferenceC: c(70), ZK: c(7.5), TimeS: min_(2), FromC: c(55)}}, nil, []told{
 		{"65 °C for 10 min", "cook 0-60", "0:65 10:65 10.001:20 60:20", Met}, {"65 °C for 9 min", "cook 0-60", "0:65 9:65 9.001:20 60:20", NotMet}}},
@@ -165,7 +165,7 @@ var forms = []form{
 	{"A19 nested: California 3 CCR 910.15, (1) and (2A or 2B)", []Limit{
 		{Name: "1", Kind: Band, FromC: f(40), ToC: f(120), TimeS: min_(1200), Counting: Total, Group: "rule"},
 		{Name: "2A", Kind: Falling, Stages: st(model.Cool), AllowanceK: c(0.2), Group: "two"},
-		{Name: "2B", Kind: CoolWithin, FromC: f(120), ToC: f(55), TimeS: min_(360), Clock: crossing, Where: Where{"surface"}, Group: "two"}},
+		{Name: "2B", Kind: Band, FromC: f(80), ToC: f(120), TimeS: min_(120), Counting: Total, Where: Where{"surface"}, Group: "two"}},
 		[]Group{{Name: "rule"}, {Name: "two", AnyOf: true, Within: "rule"}}, []told{
 			{"rises, but the surface is quick", "cool 0-1500", "centre: 0:60 100:49 500:13 600:14 1000:4.4 1500:3; surface: 0:60 100:48.9 200:10 1500:3", Met},
 			{"rises and is slow", "cool 0-1500", "centre: 0:60 100:49 500:13 600:14 1000:4.4 1500:3; surface: 0:60 100:49 500:13 600:14 1000:4.4 1500:3", NotMet},
@@ -199,6 +199,67 @@ var forms = []form{
 		{"5 days", "store 0-7200", "0:4 7200:4", Met}, {"6 days", "store 0-8640", "0:4 8640:4", NotMet}}},
 	{"A30 margin of the instrument: 165 °F needed, 166 °F set", []Limit{{Kind: Hold, Stages: st(model.Cook), FromC: f(166), TimeS: c(0), Counting: Total}}, nil, []told{
 		{"166 °F", "cook 0-60", "0:5 60:74.5", Met}, {"165.5 °F", "cook 0-60", "0:5 60:74.2", NotMet}}},
+	{"A3 table: MHLW Japan, equals of 75 °C for 1 min", []Limit{{Kind: HoldTable, Stages: st(model.Cook), Where: Where{"centre"}, Counting: Continuous, Table: celsiusRows(75, 1, 70, 3, 69, 4, 68, 5, 67, 8, 66, 11, 65, 15, 63, 30)}}, nil, []told{
+		{"8 min at 67 °C", "cook 0-60", "0:5 30:67 38:67 39:20 60:20", Met}, {"7 min at 67.9 °C", "cook 0-60", "0:5 30:67.9 37:67.9 37.1:20 60:20", NotMet},
+		{"two periods of 4 min at 67 °C, continuously wanted", "cook 0-60", "0:5 30:67 34:67 35:60 36:67 40:67 41:20 60:20", NotMet}}},
+	{"A4 table by oven: FDA Food Code 3-401.11(B), convection oven at 325 °F and a row for the core", []Limit{
+		{Name: "oven", Kind: StayAbove, Stages: st(model.Cook), FromC: f(325), Where: Where{"medium"}, Group: "g"},
+		{Name: "core", Kind: HoldTable, Stages: st(model.Cook, model.Rest), Counting: Total, Table: fahrenheit(130, 112, 140, 12, 145, 4), Group: "g"}}, []Group{{Name: "g"}}, []told{
+		{"both, the row with the rise after the oven", "cook 0-60, rest 60-80", "centre: 0:5 60:61 66:63 73:60 80:50; medium: 0:165 60:165 80:165", Met},
+		{"oven too cool", "cook 0-60, rest 60-80", "centre: 0:5 60:61 66:63 73:60 80:50; medium: 0:160 60:165 80:165", NotMet},
+		{"no row", "cook 0-60, rest 60-80", "centre: 0:5 60:59 80:50; medium: 0:165 60:165 80:165", NotMet}}},
+	{"A4 milk: 21 CFR 131.3, rows for holding continuously", []Limit{{Kind: HoldTable, Stages: st(model.Cook), Counting: Continuous, Table: fahrenheit(145, 30, 161, 0.25, 191, 1.0/60, 204, 0.05/60, 212, 0.01/60)}}, nil, []told{
+		{"30 min at 63 °C", "cook 0-60", "0:5 10:63 40:63 60:20", Met}, {"half of it, twice", "cook 0-90", "0:5 10:63 27:63 28:60 29:63 45:63 60:20 90:20", NotMet}}},
+	{"A5 integral: 3 min at 121.1 °C, z 10", []Limit{{Kind: Lethality, Stages: st(model.Cook), ReferenceC: c(121.1), ZK: c(10), TimeS: min_(3)}}, nil, []told{
+		{"31 min at 111.1 °C", "cook 0-60", "0:111.1 31:111.1 31.1:20 60:20", Met}, {"29 min", "cook 0-60", "0:111.1 29:111.1 29.1:20 60:20", NotMet}}},
+	{"A7 further form: HK CFS and Ontario, 60 to 20 °C in 2 h, then 20 to 4 °C in 4 h", []Limit{
+		{Name: "a", Kind: CoolWithin, FromC: c(60), ToC: c(20), TimeS: min_(120), Clock: crossing, Where: Where{"centre"}, Group: "g"},
+		{Name: "b", Kind: CoolWithin, FromC: c(20), ToC: c(4), TimeS: min_(240), Clock: crossing, Where: Where{"centre"}, Group: "g"}}, []Group{{Name: "g"}}, []told{
+		{"both", "cook 0-60, cool 60-600", "0:5 60:80 70:60 189:20 428:4 600:3", Met}, {"the second too long", "cook 0-60, cool 60-600", "0:5 60:80 70:60 180:20 421:4 600:3", NotMet}}},
+	{"A7 three stages: Gaze et al. 1998, end of cooking to 50 °C in 2.5 h, to 12 °C in 6 h, to 5 °C in 1.5 h", []Limit{
+		{Name: "a", Kind: CoolWithin, ToC: c(50), TimeS: min_(150), Clock: after(model.Cook), Group: "g"}, {Name: "b", Kind: CoolWithin, FromC: c(50), ToC: c(12), TimeS: min_(360), Clock: crossing, Group: "g"},
+		{Name: "c", Kind: CoolWithin, FromC: c(12), ToC: c(5), TimeS: min_(90), Clock: crossing, Group: "g"}}, []Group{{Name: "g"}}, []told{
+		{"all three", "cook 0-60, cool 60-900", "0:5 60:80 200:50 550:12 635:5 900:3", Met}, {"the last too long", "cook 0-60, cool 60-900", "0:5 60:80 200:50 550:12 645:5 900:3", NotMet}}},
+	{"A8 clock from preparation: FDA Food Code 3-501.14(B), 41 °F in 4 h", []Limit{{Kind: CoolWithin, ToC: f(41), TimeS: min_(240), Clock: fromStart(model.Cool)}}, nil, []told{
+		{"3 h 50 min", "cool 0-400", "0:21 230:5 400:3", Met}, {"4 h 10 min", "cool 0-400", "0:21 250:5 400:3", NotMet}}},
+	{"A8 and A10: Department of Health 1989, chilling starts within 30 min of cooking, then 3 °C within 90 min", []Limit{
+		{Name: "start", Kind: Delay, Stages: st(model.Cook), Then: model.Cool, TimeS: min_(30), Group: "g"}, {Name: "down", Kind: CoolWithin, ToC: c(3), TimeS: min_(90), Clock: fromStart(model.Cool), Group: "g"}}, []Group{{Name: "g"}}, []told{
+		{"both", "cook 0-60, rest 60-85, cool 85-300", "0:5 60:80 85:76 174:3 300:2", Met}, {"late start", "cook 0-60, rest 60-95, cool 95-300", "0:5 60:80 95:76 174:3 300:2", NotMet}, {"slow", "cook 0-60, rest 60-85, cool 85-300", "0:5 60:80 85:76 177:3 300:2", NotMet}}},
+	{"A11 band on the way up: FDA Food Code 3-403.11(D), 41 to 165 °F at most 2 h, and the target", []Limit{
+		{Name: "band", Kind: Band, Stages: st(model.Reheat), FromC: f(41), ToC: f(165), TimeS: min_(120), Counting: Total, Group: "g"}, {Name: "target", Kind: Hold, Stages: st(model.Reheat), FromC: f(165), TimeS: c(15), Counting: Total, Group: "g"}}, []Group{{Name: "g"}}, []told{
+		{"110 min", "store 0-60, reheat 60-200", "0:4 60:4 170:75 200:76", Met}, {"130 min", "store 0-60, reheat 60-200", "0:4 60:5 190:74 200:76", NotMet}, {"not hot enough", "store 0-60, reheat 60-150", "0:4 60:4 150:70", NotMet}}},
+	{"A11 bands while cooling: FSIS Appendix B, 130 to 80 °F in 1.5 h and 80 to 40 °F in 5 h", []Limit{
+		{Name: "a", Kind: Band, Stages: st(model.Cool), FromC: f(80), ToC: f(130), TimeS: min_(90), Counting: Total, Group: "g"}, {Name: "b", Kind: Band, Stages: st(model.Cool), FromC: f(40), ToC: f(80), TimeS: min_(300), Counting: Total, Group: "g"}}, []Group{{Name: "g"}}, []told{
+		{"both", "cook 0-60, cool 60-500", "0:5 60:60 70:54.5 159:26.6 458:4.4 500:3", Met}, {"the first, by a rise in between", "cook 0-60, cool 60-500", "0:5 60:60 70:54.5 155:26.6 160:28 170:26 400:4.4 500:3", NotMet}}},
+	{"A12 once only: Northern Ireland Sch. 4(5), above 8 °C less than 4 h, one period", []Limit{{Kind: StayBelow, Stages: st(model.HoldCold), ToC: c(8), TimeS: min_(240), Counting: Once, CompareTime: LessThan}}, nil, []told{
+		{"3 h 59 min", "hold cold 0-300", "0:5 10:8 100:15 249:8 300:5", Met}, {"4 h", "hold cold 0-300", "0:5 10:8 100:15 250:8 300:5", NotMet}, {"twice an hour", "hold cold 0-300", "0:5 10:8 20:12 70:8 80:5 100:8 120:12 160:8 300:5", NotMet}}},
+	{"A13 keep above at the core: South Africa R638, 60 °C", []Limit{{Kind: StayAbove, Stages: st(model.HoldHot), FromC: c(60), Where: Where{"centre"}}}, nil, []told{
+		{"60.0", "hold hot 0-300", "0:70 300:60", Met}, {"59.9", "hold hot 0-300", "0:70 300:59.9", NotMet}}},
+	{"A14 outside, edges not allowed: Singapore, above 60 or below 5 °C", []Limit{{Kind: Outside, Stages: st(model.HoldHot), FromC: c(5), ToC: c(60), Compare: MoreThan}}, nil, []told{
+		{"60.1", "hold hot 0-300", "0:70 300:60.1", Met}, {"60.0", "hold hot 0-300", "0:70 300:60", NotMet}}},
+	{"A15 excursion: Regulation 853/2004 Annex III VIII, -18 °C, brief rises of up to 3 °C, the user's own 30 min in all", []Limit{
+		{Name: "a", Kind: StayBelow, Stages: st(model.Store), ToC: c(-18), TimeS: min_(30), Counting: Total}, {Name: "b", Kind: StayBelow, Stages: st(model.Store), ToC: c(-15)}}, nil, []told{
+		{"one of 25 min", "store 0-300", "0:-20 50:-18 60:-15 75:-18 300:-20", Met}, {"two of 20 min", "store 0-300", "0:-20 50:-18 60:-16 70:-18 100:-20 200:-18 210:-16 220:-18 300:-20", NotMet}}},
+	{"A19 either or: MHLW Japan, about 20 °C in 30 min or 10 °C in 60 min", []Limit{
+		{Name: "a", Kind: CoolWithin, ToC: c(20), TimeS: min_(30), Clock: fromStart(model.Cool), Where: Where{"centre"}, Group: "g"}, {Name: "b", Kind: CoolWithin, ToC: c(10), TimeS: min_(60), Clock: fromStart(model.Cool), Where: Where{"centre"}, Group: "g"}}, []Group{{Name: "g", AnyOf: true}}, []told{
+		{"the second", "cook 0-60, cool 60-200", "0:5 60:80 95:20 119:10 200:5", Met}, {"neither", "cook 0-60, cool 60-200", "0:5 60:80 95:20 125:10 200:5", NotMet}}},
+	{"A19 either or: FDA Food Code 3-402.11, parasites, -4 °F for 168 h or -31 °F for 15 h", []Limit{
+		{Name: "a", Kind: Hold, ToC: f(-4), TimeS: min_(10080), Counting: Continuous, Group: "g"}, {Name: "b", Kind: FreezeHold, FromC: f(-31), TimeS: c(0), ToC: f(-31), SecondS: min_(900), Group: "g"}}, []Group{{Name: "g", AnyOf: true}}, []told{
+		{"a week", "freeze 0-600, store 600-12000", "0:5 600:-20 10690:-20.1 12000:-20.1", Met}, {"15 h at -31 °F", "freeze 0-600, store 600-3000", "0:5 600:-35.1 1510:-35.1 1600:-18 3000:-18", Met}, {"neither", "freeze 0-600, store 600-9000", "0:5 600:-34 9000:-34", NotMet}}},
+	{"A19 at 75 °C, or below with documents: Denmark", []Limit{
+		{Name: "a", Kind: Hold, Stages: st(model.Cook), FromC: c(75), TimeS: c(0), Counting: Total, Group: "g"}, {Name: "doc", Kind: Stated, Answer: "no", Group: "g"}}, []Group{{Name: "g", AnyOf: true}}, []told{
+		{"75.0", "cook 0-60", "0:5 60:75", Met}, {"74 and no documents", "cook 0-60", "0:5 60:74", NotMet}}},
+	{"A26 duty in two: FSIS Appendix B advice, at most 1 h from 120 to 80 °F", []Limit{{Kind: Band, FromC: f(80), ToC: f(120), TimeS: min_(60), Counting: Total, Advice: true}, {Name: "must", Kind: Stated, Answer: "yes"}}, nil, []told{
+		{"two hours", "cook 0-60, cool 60-400", "0:5 60:80 180:20 400:3", Met}}},
+}
+
+// celsiusRows makes a table: °C, min, °C, min, …
+func celsiusRows(rows ...float64) *Table {
+	t := &Table{Name: "rows"}
+	for i := 0; i < len(rows); i += 2 {
+		t.Rows = append(t.Rows, Row{C: rows[i], S: 60 * rows[i+1]})
+	}
+	return t
 }
 
 // TestForms judges every form on both sides: the verdict of the product.
