@@ -167,41 +167,32 @@ type interval2 struct{ s, from, to float64 }
 // stay measures how long a path is in a region within intervals whose ends are knots.
 func (p path) stay(ivs []interval, r region) spent {
 	var sp spent
+	lo, hi := r.lo-r.slack, r.hi+r.slack
 	for _, iv := range ivs {
 		q := p.in(iv)
-		on, start := false, 0.0
-		end := func(t float64) {
-			if on && t-start > 1e-9 {
-				sp.add(start, t)
-			}
-			on = false
+		if len(q.t) == 0 {
+			continue
 		}
+		inA := q.c[0] >= lo && q.c[0] <= hi
+		on, start := inA, q.t[0]
 		for i := 0; i+1 < len(q.t); i++ {
-			A, B := q.c[i], q.c[i+1]
-			inA, inB := r.holds(A), r.holds(B)
+			B := q.c[i+1]
+			inB := B >= lo && B <= hi
 			switch {
-			case inA && inB:
-				if !on {
-					on, start = true, q.t[i]
-				}
-			case inA:
-				if !on {
-					on, start = true, q.t[i]
-				}
-				end(q.cross(i, r.edge(B)))
-			case inB:
-				end(q.t[i])
-				on, start = true, q.cross(i, r.edge(A))
-			default:
-				end(q.t[i])
-				if A <= r.lo && B >= r.hi || A >= r.hi && B <= r.lo {
-					on, start = true, q.cross(i, r.edge(A))
-					end(q.cross(i, r.edge(B)))
+			case inA && !inB:
+				sp.add(start, q.cross(i, r.edge(B)))
+				on = false
+			case inB && !inA:
+				on, start = true, q.cross(i, r.edge(q.c[i]))
+			case !inA:
+				if A := q.c[i]; A <= r.lo && B >= r.hi || A >= r.hi && B <= r.lo {
+					sp.add(q.cross(i, r.edge(A)), q.cross(i, r.edge(B)))
 				}
 			}
+			inA = inB
 		}
-		if len(q.t) > 0 {
-			end(q.t[len(q.t)-1])
+		if on {
+			sp.add(start, q.t[len(q.t)-1])
 		}
 	}
 	return sp
@@ -215,8 +206,11 @@ func (r region) edge(c float64) float64 {
 	return r.hi
 }
 
-// add counts one more period.
+// add counts one more period; a touch has no length and is none.
 func (sp *spent) add(from, to float64) {
+	if to-from <= 1e-9 {
+		return
+	}
 	p := interval2{to - from, from, to}
 	if sp.count == 0 {
 		sp.first, sp.total.from = p, from

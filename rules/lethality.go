@@ -147,7 +147,9 @@ func (k killer) over(p path, ivs []interval) float64 {
 		q := p.in(iv)
 		top := math.Inf(-1)
 		for _, c := range q.c {
-			top = math.Max(top, c)
+			if c > top {
+				top = c
+			}
 		}
 		top += k.shiftK
 		for i := 0; i+1 < len(q.t); i++ {
@@ -161,10 +163,14 @@ func (k killer) over(p path, ivs []interval) float64 {
 // warmest temperature: stretches far below it are taken as straight, and those whose share is nothing are left out.
 func (k killer) stretch(p path, i int, top float64) float64 {
 	a, b := p.c[i]+k.shiftK, p.c[i+1]+k.shiftK
-	if hi := math.Max(a, b); hi < k.floorC || p.t[i] == p.t[i+1] || (top-hi)*k.lnBelow > k.far {
+	lo, hi := a, b
+	if a > b {
+		lo, hi = b, a
+	}
+	if hi < k.floorC || p.t[i] == p.t[i+1] || (top-hi)*k.lnBelow > k.far {
 		return 0
 	}
-	if lo := math.Min(a, b); p.at == nil && lo >= k.floorC && (k.lnAbove == k.lnBelow || lo >= k.refC || math.Max(a, b) <= k.refC) {
+	if p.at == nil && lo >= k.floorC && (k.lnAbove == k.lnBelow || lo >= k.refC || hi <= k.refC) {
 		return k.straight(p.t[i+1]-p.t[i], a, b)
 	}
 	ts := []float64{p.t[i], p.t[i+1]}
