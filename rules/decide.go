@@ -48,7 +48,7 @@ type question struct {
 	unit    string
 	need    float64 // required, in unit; NaN for none
 	warm    bool    // colder food would be less favourable, so a bound from above proves nothing once it begins
-	adds    bool    // time adds up: what was reached before a bound begins counts all the same
+	adds    bool    // what was reached before a bound begins counts all the same
 }
 
 // rank orders verdicts from harmless to worst.

@@ -15,7 +15,7 @@ func judgeEnd(v *view) Finding {
 	} else {
 		level = *l.FromC
 	}
-	q := question{unit: "°C", need: level, warm: sign > 0}
+	q := question{unit: "°C", need: level, warm: sign > 0, adds: true}
 	instants := func(p path, errK float64) []float64 {
 		if l.TimeS == nil {
 			var ts []float64

@@ -272,6 +272,9 @@ func TestBound(t *testing.T) {
 		{"never below 0", Limit{Kind: StayAbove, FromC: c(0)}, "0:5 50:72 60:72 100:20 300:1", CannotTell},
 		{"below 0 even so", Limit{Kind: StayAbove, FromC: c(0)}, "0:5 50:72 60:72 100:20 300:-1", NotMet},
 		{"cold at the end", Limit{Kind: ByTheEnd, ToC: c(3)}, "0:5 50:72 60:72 100:20 300:1", Met},
+		{"heated before", Limit{Kind: HeatWithin, ToC: c(70), TimeS: min_(60), Clock: fromStart(model.Cook)}, "0:5 50:72 60:72 100:20 300:-2", Met},
+		{"warm at the end of the cook", Limit{Kind: ByTheEnd, FromC: c(70), Stages: st(model.Cook)}, "0:5 50:72 60:72 100:20 300:-2", Met},
+		{"outside before and after", Limit{Kind: Outside, FromC: c(-10), ToC: c(-5)}, "0:5 50:72 60:72 100:20 300:-2", CannotTell},
 		{"warm at the end", Limit{Kind: ByTheEnd, FromC: c(0)}, "0:5 50:72 60:72 100:20 300:1", CannotTell},
 	} {
 		t.Run(x.name, func(t *testing.T) {
