@@ -1,0 +1,272 @@
+package model
+
+import (
+	"math"
+	"strings"
+	"testing"
+
+	"slowpoint/model/cell"
+)
+
+func ptr[T any](x T) *T { return &x }
+
+// plain is a product and chain that Check takes as they are; no two numbers are alike.
+func plain() (Product, []Step) {
+	food := &Material{At: cell.Ref{Sheet: "Foods", Row: 7}, Name: "mash", Source: "test input", Flow: FlowsNo,
+		Props: func(float64) Properties { return Properties{KWmK: 0.51, RhoKgM3: 1040, CJkgK: 3600} }}
+	at := func(row int) cell.Ref { return cell.Ref{Sheet: "Steps", Row: row} }
+	oven := Exposure{At: at(2), Surface: Film, FilmW: ptr(27.0), Medium: Course{TimesS: []float64{0}, C: []float64{148}}}
+	air := Exposure{At: at(3), Surface: MovingAir, AirMS: ptr(2.2), Medium: Course{TimesS: []float64{0}, C: []float64{3}}}
+	return Product{At: cell.Ref{Sheet: "Products", Row: 2}, Name: "P", Shape: Slab, Size: Size{ThicknessM: 0.043}, Food: food, StartC: 6},
+		[]Step{{Name: "bake", Stage: Cook, DurationS: 4100, Exposure: oven}, {Name: "blast", Stage: Cool, DurationS: 5300, Exposure: air}}
+}
+
+func TestCheckTakesASoundProduct(t *testing.T) {
+	if found := Check(plain()); len(found) > 0 {
+		t.Error(found)
+	}
+}
+
+// Every refusal: what is changed in a sound product, where the message must stand and what it must say.
+func TestCheckRefuses(t *testing.T) {
+	for _, c := range []struct {
+		name   string
+		change func(*Product, []Step)
+		at     string
+		field  string
+		says   string
+	}{
+		{"spheroid", func(p *Product, _ []Step) { p.Shape = Spheroid }, "Products row 2", "Shape", "cannot be calculated yet"},
+		{"layered slab", func(p *Product, _ []Step) { p.Shape = LayeredSlab }, "Products row 2", "Shape", "cannot be calculated yet"},
+		{"no thickness", func(p *Product, _ []Step) { p.Size.ThicknessM = 0 }, "Products row 2", "Thickness", "needs Thickness"},
+		{"no food", func(p *Product, _ []Step) { p.Food = nil }, "Products row 2", "Food", "no food"},
+		{"properties that follow the temperature", func(p *Product, _ []Step) { p.Food.Table = true }, "Foods row 7", "At temperature", "several temperatures"},
+		{"liquid", func(p *Product, _ []Step) { p.Food.Flow = FlowsYes }, "Foods row 7", "Flows", "mixes by itself"},
+		{"thick liquid", func(p *Product, _ []Step) { p.Food.Flow = FlowsThick }, "Foods row 7", "Flows", "may mix by itself"},
+		{"frozen start", func(p *Product, _ []Step) { p.StartC = -18 }, "Products row 2", "Start temperature", "starts frozen"},
+		{"point outside", func(p *Product, _ []Step) {
+			p.Points = []Point{{At: cell.Ref{Sheet: "Points", Row: 4}, Name: "probe", Place: Place{UpM: 0.03}}}
+		}, "Points row 4", "Up", "outside the food"},
+		{"freezing stage", func(_ *Product, s []Step) { s[1].Stage = Freeze }, "Steps row 3", "Stage", "freezing and thawing"},
+		{"thawing stage", func(_ *Product, s []Step) { s[0].Stage = Thaw }, "Steps row 2", "Stage", "freezing and thawing"},
+		{"radiation", func(_ *Product, s []Step) { s[0].RadiatingC = ptr(170.0) }, "Steps row 2", "Radiating temperature", "radiation"},
+		{"emissivity", func(_ *Product, s []Step) { s[0].Emissivity = ptr(0.9) }, "Steps row 2", "Emissivity", "radiation"},
+		{"loose lid", func(_ *Product, s []Step) { s[0].Cover = LooseLid }, "Steps row 2", "Wrap resistance", "0.04 m²K/W"},
+		{"no film", func(_ *Product, s []Step) { s[0].FilmW = nil }, "Steps row 2", "Film coefficient", "needs it"},
+		{"no air speed", func(_ *Product, s []Step) { s[1].AirMS = nil }, "Steps row 3", "Air speed", "needs it"},
+		{"no medium", func(_ *Product, s []Step) { s[1].Medium = Course{} }, "Steps row 3", "Temperature", "needs a temperature"},
+		{"short course", func(_ *Product, s []Step) {
+			s[0].Medium = Course{Name: "oven log", TimesS: []float64{0, 3000}, C: []float64{90, 150}}
+		}, "Steps row 2", "Course", "before its step"},
+		{"hot air without dry or wet", func(_ *Product, s []Step) { s[0].Surface, s[0].AirMS = MovingAir, ptr(1.4) }, "Steps row 2", "Surface", "dry or wet"},
+		{"hot air on a wet surface", func(_ *Product, s []Step) { s[0].Surface, s[0].Wet = StillAir, ptr(true) }, "Steps row 2", "Surface", "far too fast"},
+		{"boiling water on a mountain", func(_ *Product, s []Step) {
+			s[0].Surface, s[0].Medium.C, s[0].AltitudeM = BoilingWater, []float64{100}, 1900
+		}, "Steps row 2", "Temperature", "boils at 93"},
+		{"cold air, freezing point unknown", func(_ *Product, s []Step) { s[1].Medium.C = []float64{-4} }, "Steps row 3", "Temperature", "freezing point is not known"},
+		{"cold air in a cook", func(p *Product, s []Step) { p.Food.FreezingC, s[0].Medium.C = ptr(-1.1), []float64{-4} }, "Steps row 2", "Temperature", "could freeze"},
+		{"face that the shape has not", func(_ *Product, s []Step) {
+			s[0].Faces = []FaceExposure{{Ends, Exposure{At: cell.Ref{Sheet: "Faces", Row: 5}, Surface: Insulated}}}
+		}, "Faces row 5", "Face", "no face"},
+		{"no duration", func(_ *Product, s []Step) { s[0].DurationS = math.NaN() }, "Steps row 2", "Duration", "above 0"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			p, steps := plain()
+			c.change(&p, steps)
+			found := Check(p, steps)
+			for _, e := range found {
+				if e.At.String() == c.at && e.Field == c.field && strings.Contains(e.Error(), c.says) {
+					if _, err := Solve(p, steps, Options{}); err == nil {
+						t.Error("Check refuses it, and Solve calculates it")
+					}
+					return
+				}
+			}
+			t.Errorf("want %s, %s, …%s…; got %v", c.at, c.field, c.says, found)
+		})
+	}
+}
+
+// A cool chain after a cold one is not asked for dry or wet: 3 °C air after 2 °C air, and 21 °C air after an oven.
+func TestCheckAsksDryOrWetOnlyForHeating(t *testing.T) {
+	p, steps := plain()
+	steps = append(steps, Step{Name: "store", Stage: Store, DurationS: 9000, Exposure: steps[1].Exposure})
+	steps[2].Medium = Course{C: []float64{4}}
+	if found := Check(p, steps); len(found) > 0 {
+		t.Error(found)
+	}
+	steps[2].Medium = Course{C: []float64{22}}
+	if found := Check(p, steps); found.Faults() != 1 {
+		t.Errorf("air of 22 °C after air of 3 °C: %v", found)
+	}
+}
+
+// A chill medium below the freezing point is raised to it, said to be a bound, and every temperature is then at or above the one of the
+// true medium without freezing.
+func TestChillMediumIsRaised(t *testing.T) {
+	p, steps := plain()
+	p.Food.FreezingC = ptr(-1.3)
+	steps[1].Medium = Course{Name: "air", TimesS: []float64{0, 2000, 6000}, C: []float64{9, -11, -12}}
+	h, err := Solve(p, steps, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if !strings.Contains(h.Bound, "-12.0 °C was raised to the freezing point, -1.3 °C") || h.BoundFromS != 4100 {
+		t.Errorf("bound %q from %g s", h.Bound, h.BoundFromS)
+	}
+	if got := h.MediumC(4100 + 6000); got != -12 {
+		t.Errorf("the medium as typed reads %g °C", got)
+	}
+	p.Food.FreezingC = ptr(-20.0)
+	low, err := Solve(p, steps, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	a, b := h.Sample(300), low.Sample(300)
+	for i := range a.TimesS {
+		if a.Coldest[i] < b.Coldest[i]-1e-3 || a.Hottest[i] < b.Hottest[i]-1e-3 {
+			t.Fatalf("at %g s the bound is below: %g, %g", a.TimesS[i], a.Coldest[i], b.Coldest[i])
+		}
+	}
+	if a.Coldest[len(a.Coldest)-1] < -1.3 {
+		t.Error("below the freezing point")
+	}
+}
+
+// A step that ends when the slowest place reaches a temperature ends at that instant, in heating by the coldest place and in
+// cooling by the hottest; one that does not reach it lasts its duration and says so.
+func TestUntil(t *testing.T) {
+	p, steps := plain()
+	steps[0].UntilC, steps[1].UntilC, steps[1].DurationS = ptr(63.0), ptr(21.0), 30000
+	h, err := Solve(p, steps, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	s := h.Sample(60)
+	at := func(t float64) int {
+		for i := range s.TimesS {
+			if s.TimesS[i] == t {
+				return i
+			}
+		}
+		return -1
+	}
+	cook, chill := at(h.Spans[0].EndS), at(h.Spans[1].EndS)
+	if got := s.Coldest[cook]; math.Abs(got-63) > 1e-4 || !*h.Spans[0].Reached {
+		t.Errorf("cook ends at %g °C", got)
+	}
+	if got := s.Hottest[chill]; math.Abs(got-21) > 1e-4 || !*h.Spans[1].Reached {
+		t.Errorf("chill ends at %g °C", got)
+	}
+	for i, c := range s.Coldest[:cook] {
+		if c > 63 {
+			t.Errorf("already %g °C at %g s", c, s.TimesS[i])
+		}
+	}
+	steps[0].UntilC = ptr(140.0)
+	if h, err = Solve(p, steps, Options{}); err != nil {
+		t.Fatal(err)
+	}
+	if *h.Spans[0].Reached || h.Spans[0].EndS != 4100 {
+		t.Errorf("a goal out of reach: ended at %g s", h.Spans[0].EndS)
+	}
+}
+
+// Properties from composition are taken at the mean of the coldest and hottest food of the step, what is above 100 °C counting as 100.
+func TestPropertiesAtTheMeanOfTheFood(t *testing.T) {
+	p, steps := plain()
+	p.Food.Composed = true
+	p.Food.Props = func(c float64) Properties {
+		return Properties{KWmK: 0.46 + 0.0012*c, RhoKgM3: 1050 - 0.3*c, CJkgK: 3500 + 2*c}
+	}
+	steps[0].FilmW = ptr(170.0) // drives the surface above 100 °C
+	h, err := Solve(p, steps, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	s := h.Sample(30)
+	for i := range h.Spans {
+		sp := &h.Spans[i]
+		low, high := math.Inf(1), math.Inf(-1)
+		for k, t := range s.TimesS {
+			if t >= sp.StartS && t <= sp.EndS {
+				low, high = math.Min(low, s.Coldest[k]), math.Max(high, s.Hottest[k])
+			}
+		}
+		if i == 0 && high < 110 {
+			t.Errorf("the surface reaches only %g °C: the case does not test the ceiling", high)
+		}
+		want := (math.Min(low, 100) + math.Min(high, 100)) / 2
+		if math.Abs(sp.PropsAtC-want) > 0.6 {
+			t.Errorf("step %d: properties at %.2f °C, mean of the food %.2f °C", i+1, sp.PropsAtC, want)
+		}
+		if sp.Props != p.Food.Props(sp.PropsAtC) {
+			t.Errorf("step %d: properties %v are not those of %g °C", i+1, sp.Props, sp.PropsAtC)
+		}
+	}
+	slow, err := Solve(p, steps, Options{ConductivityFactor: 0.9})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if got := slow.Spans[1].Props.KWmK / p.Food.Props(slow.Spans[1].PropsAtC).KWmK; math.Abs(got-0.9) > 1e-12 {
+		t.Errorf("conductivity factor %g", got)
+	}
+}
+
+// Leaving points out of a logged course moves no temperature by more than it says.
+func TestThinnedCourse(t *testing.T) {
+	m := Course{Name: "log"}
+	for i := 0; i <= 900; i++ {
+		x := float64(i) * 7
+		c := 3 + 11*math.Exp(-x/800)
+		if x > 3500 && x < 4100 {
+			c += (x - 3500) / 40 // a door
+		}
+		m.TimesS, m.C = append(m.TimesS, x), append(m.C, c)
+	}
+	thin := thinned(m, 6000)
+	if len(thin.C) > len(m.C)/3 {
+		t.Errorf("%d of %d points are left", len(thin.C), len(m.C))
+	}
+	for i, x := range m.TimesS {
+		if x <= 6000 {
+			if d := math.Abs(lineAt(thin.TimesS, thin.C, x) - m.C[i]); d > thinK*1.0001 {
+				t.Errorf("at %g s off by %g K", x, d)
+			}
+		}
+	}
+}
+
+// Insulated all round, nothing changes; stirred food follows the exponential of a well-mixed body.
+func TestInsulatedAndStirred(t *testing.T) {
+	p, steps := plain()
+	steps[1].Exposure = Exposure{At: steps[1].At, Surface: Insulated}
+	h, err := Solve(p, steps, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	s := h.Sample(100)
+	var before float64
+	for i, x := range s.TimesS {
+		if x == 4100 {
+			before = s.Mean[i]
+		}
+	}
+	last := len(s.Mean) - 1
+	if math.Abs(s.Mean[last]-before) > 1e-9 || s.Hottest[last]-s.Coldest[last] > 1 {
+		t.Errorf("mean %g then %g °C, spread %g K", before, s.Mean[last], s.Hottest[last]-s.Coldest[last])
+	}
+
+	p, steps = plain()
+	p.Shape, p.Size = Stirred, Size{VolumeM3: 0.021, AreaM2: 0.37}
+	steps[1].Surface, steps[1].FilmW, steps[1].WrapM2KW = Film, ptr(33.0), ptr(0.013)
+	if h, err = Solve(p, steps, Options{}); err != nil {
+		t.Fatal(err)
+	}
+	heat := 0.021 * 1040 * 3600.0
+	cook := 148 + (6-148)*math.Exp(-27*0.37/heat*4100)
+	want := 3 + (cook-3)*math.Exp(-1/(1/33.0+0.013)*0.37/heat*2500)
+	if got := h.At(Place{}, 4100+2500); math.Abs(got-want) > 1e-9 {
+		t.Errorf("%g °C, exact %g", got, want)
+	}
+}
