@@ -83,7 +83,7 @@ func widthMM(s string, size float64, bold bool) float64 {
 func wrap(s string, width, size float64, bold bool) []string {
 	var lines []string
 	for _, par := range strings.Split(s, "\n") {
-		line := ""
+		line, before := "", len(lines)
 		for _, word := range tokens(par) {
 			try := word
 			if line != "" {
@@ -103,7 +103,9 @@ func wrap(s string, width, size float64, bold bool) []string {
 			}
 			line = word
 		}
-		lines = append(lines, line)
+		if line != "" || len(lines) == before {
+			lines = append(lines, line)
+		}
 	}
 	return lines
 }

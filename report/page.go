@@ -190,15 +190,20 @@ func (d *doc) item(mark, s string, size float64) {
 	d.y += 1
 }
 
-// heading begins a section: it stays with at least keep mm of what follows, and is a bookmark at a level.
+// heading begins a section: it stays with at least keep mm of what follows, and is a bookmark at its level.
 func (d *doc) heading(s string, level int, keep float64) {
+	d.section(s, level, keep, level)
+}
+
+// section is a heading whose bookmark has a level of its own.
+func (d *doc) section(s string, level int, keep float64, mark int) {
 	size := [...]float64{16, 12.5, 10.5}[level]
 	if d.y > topY {
-		d.y += [...]float64{5, 4, 2.5}[level]
+		d.y += [...]float64{5, 3.5, 2.5}[level]
 	}
 	d.need(height(size) + keep)
-	d.bookmark(s, level)
-	d.para(s, style{size: size, bold: true, after: [...]float64{2, 1.5, 0.8}[level]})
+	d.bookmark(s, mark)
+	d.para(s, style{size: size, bold: true, after: [...]float64{2, 1.2, 0.8}[level]})
 }
 
 // bookmark marks the place in the outline, never more than one level below the last.

@@ -345,6 +345,7 @@ func (x *sheet) front() {
 	d.heading(say("front title", p.Product.Name), 0, 20)
 	d.para(say("front verdict", verdictWord(overall(p.Judgement.Verdict)), x.headline()), style{size: 11, bold: true, after: 1})
 	d.text(x.counts())
+	d.text(strings.Join(CautionText()[:2], " ") + say("see cautions"))
 	for _, g := range p.Judgement.Groups {
 		key := "group all"
 		if g.AnyOf {
@@ -381,7 +382,6 @@ func (x *sheet) front() {
 	d.heading(say("plan title"), 1, 20)
 	d.pairs(rows, 45)
 	x.signatures("sign prepared", "sign reviewed", "sign responsible")
-	d.para(strings.Join(CautionText()[:2], " ")+say("see cautions"), style{size: small, after: 1})
 }
 
 func (x *sheet) problems(ps cell.Errors) {
@@ -430,8 +430,7 @@ func (x *sheet) signatures(keys ...string) {
 // limits are the margin bars and one card a limit.
 func (x *sheet) limits() {
 	d := x.doc
-	d.page()
-	d.heading(say("limits title"), 0, 30)
+	d.heading(say("limits title"), 0, 70)
 	if len(x.order) == 0 {
 		d.text(say("headline none"))
 		return
@@ -519,7 +518,7 @@ func (x *sheet) card(f *rules.Finding) {
 		{say("card hazard"), joined(prefixed("CCP ", l.CCP), l.Hazard, l.Status, l.Note)},
 		{say("card cells"), refs(f.Cells)},
 	}
-	d.heading(say("card title", title, verdictWord(f.Verdict)), 2, min(d.pairsHeight(rows, 36)+1, 150))
+	d.section(say("card title", title, verdictWord(f.Verdict)), 2, min(d.pairsHeight(rows, 36)+1, 150), 1)
 	d.pairs(rows, 36)
 }
 
@@ -605,6 +604,10 @@ func (x *sheet) predicted() {
 	}
 	d.heading(say("sketch title"), 1, 58)
 	d.sketch(&x.p.Product, x.decides.place, x.decides.placeName, 48)
+	if x.p.Product.Shape == model.Stirred {
+		d.text(say("sketch sentence stirred", x.sizes()))
+		return
+	}
 	d.text(say("sketch sentence", x.p.Product.Shape.Name, x.sizes(), x.decides.placeName))
 }
 
@@ -775,7 +778,11 @@ func (x *sheet) profileSentence(times []float64) string {
 				x.head.temperature(hist.At(c, t), x.cautious(t))))
 		}
 	}
-	return say("profile sentence", strings.Join(s, "; "))
+	out := say("profile sentence", strings.Join(s, "; "))
+	if hist == x.p.Low {
+		out = say("profile low") + out
+	}
+	return out
 }
 
 // sizes says the sizes of the product that its shape uses.

@@ -408,4 +408,6 @@ var words = map[string]string{
 	"operator decides record": "Judged from the measured record. The person responsible and the local authority decide.",
 	"in calculation":          "in the calculation",
 	"in record":               "in the record",
+	"profile low":             "Run with 0.9 times the conductivity, the less favourable one. ",
+	"sketch sentence stirred": "Calculated as stirred: %s. Every place has the same temperature.",
 }

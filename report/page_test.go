@@ -1,0 +1,187 @@
+package report
+
+import (
+	"math"
+	"slices"
+	"strings"
+	"testing"
+
+	"slowpoint/model"
+	"slowpoint/rules"
+)
+
+func TestClean(t *testing.T) {
+	for _, c := range []struct{ name, in, want, missing string }{
+		{"plain", "Tray 1, 60 mm", "Tray 1, 60 mm", ""},
+		{"accents, Greek, Cyrillic, Vietnamese", "Crème Żurek Σούπα Щи Phở", "Crème Żurek Σούπα Щи Phở", ""},
+		{"decomposed accent is composed", "e\u0301", "é", ""},
+		{"control characters become blanks", "a\tb\x07c\u2028d", "a b c d", ""},
+		{"invisible ones go", "soft\u00adhyphen\u200b\ufe0f", "softhyphen", ""},
+		{"emoji", "soup 🍗", "soup \uFFFD", "U+1F357"},
+		{"Chinese", "红", "\uFFFD", "U+7EA2"},
+		{"broken bytes", "a\xff", "a\uFFFD", ""},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			u := unseen{}
+			if got := u.clean(c.in); got != c.want {
+				t.Errorf("%q, want %q", got, c.want)
+			}
+			if got := u.list(); got != c.missing {
+				t.Errorf("missing %q, want %q", got, c.missing)
+			}
+		})
+	}
+}
+
+func TestUnseenListIsCapped(t *testing.T) {
+	u := unseen{}
+	for r := rune(0x4e00); r < 0x4e0d; r++ {
+		u[r] = true
+	}
+	if got := u.list(); !strings.HasPrefix(got, "U+4E00, ") || !strings.HasSuffix(got, "U+4E09 and 3 more") {
+		t.Error(got)
+	}
+}
+
+func TestWrap(t *testing.T) {
+	for _, c := range []struct {
+		name, in string
+		wide     float64 // mm
+		want     []string
+	}{
+		{"nothing is one line", "", 50, []string{""}},
+		{"short", "a b", 50, []string{"a b"}},
+		{"a number keeps its unit", "reach 75 °C (167 °F) now", 23, []string{"reach 75 °C", "(167 °F) now"}},
+		{"a word that is too long is cut", "WWWWWWWW", 12, []string{"WWW", "WWW", "WW"}},
+		{"a width of nothing still ends", "ab", 0, []string{"a", "b"}},
+		{"lines of its own", "a\nb", 50, []string{"a", "b"}},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			if got := wrap(c.in, c.wide, small, false); !slices.Equal(got, c.want) {
+				t.Errorf("%q, want %q", got, c.want)
+			}
+		})
+	}
+}
+
+// The table of widths agrees with the advance widths of DejaVu Sans, in 2048ths of an em (from memory).
+func TestWidths(t *testing.T) {
+	for _, c := range []struct {
+		r     rune
+		bold  bool
+		units float64
+	}{{'A', false, 1401}, {'i', false, 569}, {'°', false, 1024}, {'A', true, 1585}} {
+		want := c.units / 2048 * 100 * mmPerPt
+		if got := widthMM(string(c.r), 100, c.bold); math.Abs(got-want) > 0.03 {
+			t.Errorf("%c bold %v: %.3f mm, want %.3f", c.r, c.bold, got, want)
+		}
+	}
+}
+
+// Every kind of limit has words for what it asks.
+func TestAsksOfEveryKind(t *testing.T) {
+	if len(rules.Kinds) < 15 {
+		t.Fatalf("only %d kinds", len(rules.Kinds))
+	}
+	for _, k := range rules.Kinds {
+		if asked[k.Name] == nil {
+			t.Errorf("%s: nothing says what it asks for", k.Name)
+		}
+	}
+}
+
+func TestAsks(t *testing.T) {
+	cool := &model.Stage{Name: "cool"}
+	for _, c := range []struct {
+		name, kind string
+		fahrenheit bool
+		limit      rules.Limit
+		want       string
+	}{
+		{"hold", "hold", false, rules.Limit{FromC: ptr(70.), TimeS: ptr(120.), Counting: rules.Continuous}, "at or above 70 °C (158 °F) for 2 min (without a break)"},
+		{"hold above", "hold", false, rules.Limit{FromC: ptr(70.), TimeS: ptr(15.), Counting: rules.Total, Compare: rules.MoreThan, Typed: map[string]string{"Time": "15 s"}}, "above 70 °C (158 °F) for 15 s (total)"},
+		{"hold once reached", "hold", false, rules.Limit{FromC: ptr(74.), TimeS: ptr(0.)}, "reach a temperature at or above 74 °C (165.2 °F) once"},
+		{"the typed unit is first", "cool", false, rules.Limit{FromC: ptr(135/1.8 - 32/1.8), ToC: ptr(70/1.8 - 32/1.8), TimeS: ptr(7200.), Clock: rules.Clock{Crossing: true},
+			Typed: map[string]string{"From": "135 °F", "To": "70 °F", "Time": "2 h"}}, "reach 70 °F (21.11 °C) and stay there, within at most 2 h from the first fall to 135 °F (57.22 °C)"},
+		{"less than, from the end of a stage", "cool", true, rules.Limit{ToC: ptr(5.), TimeS: ptr(5400.), CompareTime: rules.LessThan, Clock: rules.Clock{End: cool}, Typed: map[string]string{"To": "5 °C", "Time": "90 min"}},
+			"reach 5 °C (41 °F) and stay there, within less than 90 min from the end of cool"},
+		{"z is a difference and never shifts", "lethality", false, rules.Limit{TimeS: ptr(120.), ReferenceC: ptr(70.), ZK: ptr(7.5)}, "at least 2 min of equivalent time at 70 °C (158 °F) with z = 7.5 °C (13.5 °F), counting at every temperature"},
+		{"log reductions with a floor", "lethality", false, rules.Limit{Logs: ptr(6.5), DS: ptr(30.), ReferenceC: ptr(70.), ZK: ptr(10.), FromC: ptr(60.)},
+			"at least 6.5 log reductions with D = 0.5 min at 70 °C (158 °F) with z = 10 °C (18 °F), counting only from 60 °C (140 °F) on"},
+		{"never between", "outside", false, rules.Limit{FromC: ptr(8.), ToC: ptr(63.)}, "never between 8 °C (46.4 °F) and 63 °C (145.4 °F)"},
+		{"stay with an excursion", "stay below", false, rules.Limit{ToC: ptr(8.), TimeS: ptr(900.)}, "stay at or below 8 °C (46.4 °F), except for at most 15 min"},
+		{"rise", "falling", false, rules.Limit{AllowanceK: ptr(0.5)}, "never rise by more than 0.5 °C (0.9 °F)"},
+		{"stated and blank", "stated", false, rules.Limit{}, "to be stated by the user; left blank"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			c.limit.Kind = &rules.Kind{Name: c.kind}
+			if got := (&Head{Fahrenheit: c.fahrenheit}).asks(&c.limit); got != c.want {
+				t.Errorf("%q, want %q", got, c.want)
+			}
+		})
+	}
+}
+
+// A store of days is drawn shorter; hours of cooking and chilling are not.
+func TestTimeAxis(t *testing.T) {
+	history := func(hours ...float64) *model.History {
+		h, at := &model.History{}, 0.0
+		for _, d := range hours {
+			h.Spans = append(h.Spans, model.Span{StartS: at, EndS: at + d*3600})
+			at += d * 3600
+		}
+		return h
+	}
+	for _, c := range []struct {
+		name   string
+		hours  []float64
+		broken []bool
+		end    float64 // of the axis, in its unit
+	}{
+		{"two hours in minutes", []float64{1.25, 0.75}, []bool{false, false}, 120},
+		{"cook, chill, two days, reheat", []float64{2, 3, 48, 1}, []bool{false, false, true, false}, 8}, // 2+3+1, and a third of it
+		{"a long chill alone", []float64{14}, []bool{false}, 14},
+		{"seven hours beside nine", []float64{5, 4, 7}, []bool{false, false, false}, 16},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			h := history(c.hours...)
+			a := newTimeAxis(h)
+			for i, p := range a.pieces {
+				if p.broken != c.broken[i] {
+					t.Errorf("step %d drawn shorter: %v, want %v", i+1, p.broken, c.broken[i])
+				}
+			}
+			if math.Abs(a.end()-c.end) > 1e-9 || math.Abs(a.at(h.EndS())-c.end) > 1e-9 {
+				t.Errorf("end at %g and %g, want %g", a.end(), a.at(h.EndS()), c.end)
+			}
+			last := -1.0
+			for s := 0.0; s <= h.EndS(); s += 600 {
+				if x := a.at(s); x <= last {
+					t.Fatalf("at %g s the axis stands at %g after %g", s, x, last)
+				} else {
+					last = x
+				}
+			}
+			for i := 1; i < len(a.ticks); i++ {
+				if a.ticks[i].Value <= a.ticks[i-1].Value {
+					t.Errorf("mark %s stands before mark %s", a.ticks[i].Label, a.ticks[i-1].Label)
+				}
+			}
+		})
+	}
+}
+
+// The worst stands first; what does not apply is last.
+func TestWorstFirst(t *testing.T) {
+	f := func(level string, v rules.Verdict, k float64) rules.Finding {
+		return rules.Finding{Limit: &rules.Limit{Name: level}, Level: level, Verdict: v, MarginK: &k}
+	}
+	fs := []rules.Finding{f("must", rules.NotApplicable, -9), f("advice", rules.NotMet, -8), f("must", rules.Met, 5), f("must", rules.CannotTell, 0.1), f("must", rules.NotMet, -1), f("must", rules.NotMet, -3), f("must", rules.Met, 0.4)}
+	var got []float64
+	for _, f := range worstFirst(fs) {
+		got = append(got, *f.MarginK)
+	}
+	if want := []float64{-3, -1, 0.1, 0.4, 5, -8, -9}; !slices.Equal(got, want) {
+		t.Errorf("%v, want %v", got, want)
+	}
+}
