@@ -37,11 +37,11 @@ func checkCommand() *cobra.Command {
 		RunE: func(cmd *cobra.Command, args []string) error { return check(cmd, args, &o) },
 	}
 	f := cmd.Flags()
-	f.StringVar(&o.out, "out", "", "folder of the results (default PLAN-results beside the plan)")
-	f.StringVar(&o.every, "every", "60s", "interval of the courses in the results; it changes no verdict")
-	f.StringSliceVar(&o.only, "only", nil, "calculate these products only (may be repeated)")
-	f.StringVar(&o.date, "date", "", "date on the report, as 2026-01-31 (default today)")
-	f.StringVar(&o.paper, "paper", "", "A4 or Letter (default: the plan's own, else A4)")
+	f.StringVar(&o.out, "out", "", "`FOLDER` of the results (default PLAN-results beside the plan)")
+	f.StringVar(&o.every, "every", "60s", "`INTERVAL` of the courses in the results; it changes no verdict")
+	f.StringArrayVar(&o.only, "only", nil, "calculate this `PRODUCT` only (may be repeated)")
+	f.StringVar(&o.date, "date", "", "`DATE` on the report, as 2026-01-31 (default today)")
+	f.StringVar(&o.paper, "paper", "", "`SIZE` of the pages: A4 or Letter (default: the plan's own, else A4)")
 	f.BoolVar(&o.onePDF, "one-pdf", false, "one PDF with everything instead of one a product")
 	f.BoolVar(&o.noPDF, "no-pdf", false, "write no PDF")
 	return cmd

@@ -32,9 +32,8 @@ func codesCommand() *cobra.Command {
 		},
 	}
 	cmd.AddCommand(codesCopyCommand())
-	cmd.AddCommand(codesCopyCommand())
-	cmd.Flags().StringVar(&where, "where", "", "part of a jurisdiction, issuer or document")
-	cmd.Flags().StringVar(&stage, "stage", "", "stage: cook, cool, hold hot, …")
+	cmd.Flags().StringVar(&where, "where", "", "part of the name of a `PLACE`, issuer or document")
+	cmd.Flags().StringVar(&stage, "stage", "", "`STAGE`: cook, cool, hold hot, …")
 	return cmd
 }
 
