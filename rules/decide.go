@@ -140,9 +140,44 @@ func (v *view) candidates(s scope, q question) []candidate {
 			return -o.bad
 		})
 		add(p, v.c.spots[i].Surface && s.surfaceOnly)
+		for _, p := range v.edges(p, q, s.surfaceOnly) {
+			add(p, s.surfaceOnly)
+		}
 	}
 	return cs
 }
+
+// edges finds, along each axis from the least favourable place, where the limit stops to apply: the clock of a place that only
+// just was warm enough starts latest or runs longest, so what decides may lie at that very edge, between two spots.
+func (v *view) edges(from model.Place, q question, surfaceOnly bool) []model.Place {
+	counts := func(p model.Place) bool { return q.measure(v.c.path(p), tilt{rank: true}).verdict != NotApplicable }
+	if !v.patchy || !v.l.clocked() || !counts(from) {
+		return nil
+	}
+	var found []model.Place
+	for k := range v.c.marks {
+		for _, way := range []int{-1, 1} {
+			to, ok := v.c.beside(from, k, way)
+			if !ok || surfaceOnly && v.placeName(from, false) != v.placeName(to, false) || counts(to) {
+				continue
+			}
+			in, out := from, to
+			for n := 0; n < 12; n++ {
+				mid := model.Place{UpM: (in.UpM + out.UpM) / 2, AcrossM: (in.AcrossM + out.AcrossM) / 2, AlongM: (in.AlongM + out.AlongM) / 2}
+				if counts(mid) {
+					in = mid
+				} else {
+					out = mid
+				}
+			}
+			found = append(found, in)
+		}
+	}
+	return found
+}
+
+// clocked tells whether the limit's clock starts at a crossing, so that it may not apply to some places.
+func (l *Limit) clocked() bool { return l.Clock.Crossing || l.Clock.AtC != nil }
 
 // pick ranks spots by their scanned courses and returns the worst, and the second worst where its verdict differs.
 func (v *view) pick(spots []int, q question, errK float64) []int {
@@ -154,6 +189,7 @@ func (v *view) pick(spots []int, q question, errK float64) []int {
 	var ob, os outcome
 	for _, i := range spots {
 		o := q.measure(path{t: v.c.times, c: v.c.rows[i]}, t)
+		v.patchy = v.patchy || o.verdict == NotApplicable
 		switch {
 		case best < 0 || worse(o, ob):
 			second, os = best, ob
@@ -180,6 +216,7 @@ func (v *view) shortlist(spots []int, q question, t tilt) []int {
 	var top []ranked
 	for _, i := range spots {
 		o := q.measure(path{t: v.c.roughT, c: v.c.rough[i]}, t)
+		v.patchy = v.patchy || o.verdict == NotApplicable
 		at := len(top)
 		for at > 0 && worse(o, top[at-1].o) {
 			at--

@@ -20,6 +20,7 @@ type courses struct {
 	exact map[model.Place]path
 	light map[int][]float64 // of a spot: the instants that a local search looks at
 	size  [3]interval       // range of Up, Across, Along over the spots, m
+	marks [3][]float64      // the spots' coordinates on each axis, rising, m
 	air   *path
 	damp  *path
 
@@ -91,9 +92,30 @@ func newCourses(h *model.History) *courses {
 				c.size[k] = interval{x, x}
 			}
 			c.size[k] = interval{math.Min(c.size[k].a, x), math.Max(c.size[k].b, x)}
+			if n := sort.SearchFloat64s(c.marks[k], x); n == len(c.marks[k]) || c.marks[k][n] != x {
+				c.marks[k] = append(c.marks[k], x)
+				sort.Float64s(c.marks[k])
+			}
 		}
 	}
 	return c
+}
+
+// beside is the place on the next mark of an axis; ok is false at the end of it.
+func (c *courses) beside(p model.Place, axis, way int) (next model.Place, ok bool) {
+	x := [3]float64{p.UpM, p.AcrossM, p.AlongM}
+	marks := c.marks[axis]
+	n := sort.SearchFloat64s(marks, x[axis])
+	if way < 0 {
+		n--
+	} else if n < len(marks) && marks[n] == x[axis] {
+		n++
+	}
+	if n < 0 || n >= len(marks) {
+		return p, false
+	}
+	x[axis] = marks[n]
+	return model.Place{UpM: x[0], AcrossM: x[1], AlongM: x[2]}, true
 }
 
 // insert makes the given times instants of the scan, by straight lines.
@@ -253,6 +275,7 @@ type view struct {
 	runs   []run
 	stages []interval // where the limit's stages ran, joined where they meet; the whole chain if none is named
 	errK   float64
+	patchy bool // the limit does not apply to some places of the scan
 }
 
 // newView looks at a history through a limit.
