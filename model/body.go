@@ -100,7 +100,11 @@ func (b *body) extremes(s snapshot) (low, high extreme) {
 	s.grid(b.buf)
 	cold, hot := b.buf[0], b.buf[0]
 	for _, c := range b.buf {
-		cold, hot = min(cold, c), max(hot, c)
+		if c < cold {
+			cold = c
+		} else if c > hot {
+			hot = c
+		}
 	}
 	lo, hi := -1, -1 // the nearest to the centre of those that are as cold and as hot
 	for _, i := range b.order {
@@ -171,7 +175,7 @@ func (b *body) descend(s snapshot, node int, g, stride [3]int, done [3]bool, sig
 				c += r[m] * phi[m]
 			}
 			if sign*c < sign*e.c-1e-12 {
-				moved = moved || math.Abs(x-e.x[a]) > 1e-4 && sign*(e.c-c) > 1e-5
+				moved = moved || math.Abs(x-e.x[a]) > 1e-4 && sign*(e.c-c) > 3e-5
 				e.c, e.x[a] = c, x
 			}
 		}
@@ -231,7 +235,7 @@ func zeroOfSlope(slope func(float64) float64, lo, mid, hi float64) float64 {
 			x = (lo + hi) / 2
 		}
 		f := slope(x)
-		if math.Abs(f) < 1e-4 {
+		if math.Abs(f)*(hi-lo) < 4e-6 { // K: no more is to be gained
 			return x
 		}
 		if f < 0 {
@@ -402,9 +406,15 @@ func (h *History) Sample(everyS float64) Samples {
 	s := Samples{TimesS: near(rising(times))}
 	n := len(s.TimesS)
 	s.Points = make([][]float64, len(h.Points))
+	first := 1 // the centre is a node, read below
+	if h.Recorded {
+		first = 0
+	}
 	for i := range h.Points {
 		s.Points[i] = make([]float64, n)
-		h.Course(h.Points[i].Place, s.TimesS, s.Points[i])
+		if i >= first {
+			h.Course(h.Points[i].Place, s.TimesS, s.Points[i])
+		}
 	}
 	if h.Recorded {
 		return s
@@ -414,6 +424,7 @@ func (h *History) Sample(everyS float64) Samples {
 	for i, t := range s.TimesS {
 		shot := h.field.at(t)
 		low, high := h.body.extremes(shot)
+		s.Points[0][i] = h.within(t, h.body.buf[h.body.order[0]])
 		s.Coldest[i], s.ColdestAt[i] = h.within(t, low.c), h.body.place(low.x)
 		s.Hottest[i], s.HottestAt[i] = h.within(t, high.c), h.body.place(high.x)
 		s.Mean[i] = h.within(t, shot.mean())

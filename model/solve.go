@@ -178,7 +178,7 @@ func nodesOf(kind axisKind, used int, coarse bool) []float64 {
 	if kind == lumped {
 		return []float64{0}
 	}
-	n := [4]int{0, 13, 10, 8}[used]
+	n := [4]int{0, 13, 9, 7}[used]
 	if coarse {
 		n = [4]int{0, 7, 6, 4}[used]
 	}
