@@ -18,8 +18,8 @@ import (
 const (
 	headerY   = 15.0  // baseline of the running title
 	topY      = 20.0  // where text begins
-	bottomY   = 261.0 // where text ends
-	footerY   = 263.5 // the line above the footer
+	bottomY   = 257.0 // where text ends
+	footerY   = 259.0 // the line above the footer
 	frameWide = 180.0 // mm
 )
 
