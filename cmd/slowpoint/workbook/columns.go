@@ -45,6 +45,14 @@ func (c *Column) Title() string {
 	return c.Heading + " (" + c.Unit + ")"
 }
 
+// most is how many rows of the sheet are read.
+func (s *Sheet) most() int {
+	if s.Name == "Limits" || s.Name == "Groups" {
+		return 10_000
+	}
+	return mostRows
+}
+
 // Column finds a column by its heading without unit, as it stands in the list; nil if there is none.
 func (s *Sheet) Column(heading string) *Column {
 	for _, c := range s.Columns {

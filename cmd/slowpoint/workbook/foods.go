@@ -59,7 +59,7 @@ func (r *reader) readFoods() {
 	for _, f := range order {
 		f.make()
 		for _, l := range f.lines {
-			f.because = append(f.because, l.because...)
+			reasons(&f.because, l.because)
 			f.readings = append(f.readings, l.readings...)
 		}
 		if len(f.because) > 0 {
@@ -253,6 +253,10 @@ func (r *reader) foodNamed(name string) *food {
 
 // foodsLike offers names for one that is neither in the plan nor built in.
 func (r *reader) foodsLike(name string) string {
+	if r.offers > mostOffers {
+		return ""
+	}
+	r.offers += 1000 + len(r.foods)
 	var own []string
 	for _, f := range r.foods {
 		own = append(own, f.name)

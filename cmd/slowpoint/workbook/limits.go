@@ -19,6 +19,47 @@ type limits struct {
 	groups   map[string]*group
 	inLimits map[string]bool // groups that limits name, by key
 	seen     map[string]int  // row of each limit
+	scopes   map[string]*scope
+	order    []*scope // as limits name them
+}
+
+// scope is whom limits are for: all products, a family, or a product; worked out once for all limits of the same scope.
+type scope struct {
+	products []*product
+	stages   map[*model.Stage]bool // of any of them
+	faulty   bool                  // one of them has faults
+	points   map[string]*pointName // of any of them, by key
+	readings []cell.Reading        // of the limits for them, and of their tables and groups
+	given    map[string]bool       // tables and groups whose readings are there already
+}
+
+// pointName is a point of Points with how many of the products have one of that name.
+type pointName struct {
+	name string
+	n    int
+}
+
+// scope gives the scope of a name, made of its products the first time.
+func (ls *limits) scope(name string, products []*product) *scope {
+	if sc := ls.scopes[name]; sc != nil {
+		return sc
+	}
+	sc := &scope{products: products, stages: map[*model.Stage]bool{}, points: map[string]*pointName{}, given: map[string]bool{}}
+	ls.scopes[name], ls.order = sc, append(ls.order, sc)
+	for _, p := range products {
+		sc.faulty = sc.faulty || len(p.because) > 0
+		for i := range p.Steps {
+			sc.stages[p.Steps[i].Stage] = true
+		}
+		for i := range p.Points {
+			k := key(p.Points[i].Name)
+			if sc.points[k] == nil {
+				sc.points[k] = &pointName{name: p.Points[i].Name}
+			}
+			sc.points[k].n++
+		}
+	}
+	return sc
 }
 
 // timeTable is the rows of one name in Tables.
@@ -37,7 +78,7 @@ type group struct {
 
 // readLimits reads Tables, Groups and Limits. A limit with faults is kept, so that it is judged as cannot tell and not left out.
 func (r *reader) readLimits() {
-	ls := &limits{reader: r, tables: map[string]*timeTable{}, groups: map[string]*group{}, inLimits: map[string]bool{}, seen: map[string]int{}}
+	ls := &limits{reader: r, tables: map[string]*timeTable{}, groups: map[string]*group{}, inLimits: map[string]bool{}, seen: map[string]int{}, scopes: map[string]*scope{}}
 	ls.readTables()
 	ls.readGroups()
 	t := r.tables["Limits"]
@@ -50,6 +91,18 @@ func (r *reader) readLimits() {
 	ls.checkGroups()
 	for _, l := range t.lines {
 		ls.read(l)
+	}
+	for _, s := range []string{"Limits", "Groups"} {
+		if t := r.tables[s]; t != nil && t.cut { // nobody knows whom the rest is for
+			for _, p := range r.products {
+				p.suffer(r.unread[s])
+			}
+		}
+	}
+	for _, sc := range ls.order {
+		for _, p := range sc.products {
+			p.readings = append(p.readings, sc.readings)
+		}
 	}
 }
 
@@ -71,7 +124,7 @@ func (ls *limits) readTables() {
 		if at != nil && time != nil {
 			tt.Rows = append(tt.Rows, rules.Row{At: l.ref(), C: at.Computed, S: time.Computed, Typed: at.Typed + ", " + time.Typed})
 		}
-		tt.because = append(tt.because, l.because...)
+		reasons(&tt.because, l.because)
 		tt.hidden = tt.hidden || l.row.hidden
 		tt.readings = append(tt.readings, l.readings...)
 	}
@@ -90,7 +143,7 @@ func (ls *limits) readGroups() {
 		}
 		if first := ls.groups[key(g.Name)]; first != nil {
 			l.fault("Group", g.Name, duplicate, strconv.Itoa(first.At.Row), "group")
-			first.line.because = append(first.line.because, l.because...)
+			first.line.suffer(l.because)
 			continue
 		}
 		ls.groups[key(g.Name)] = g
@@ -113,23 +166,26 @@ func (ls *limits) checkGroups() {
 			continue
 		}
 		if ls.groups[key(g.Within)] == nil && !ls.inLimits[key(g.Within)] {
-			var known []string
-			for _, o := range ls.plan.Groups {
-				known = append(known, o.Name)
-			}
-			g.line.fault("Within", g.Within, groupUnknown, meant(g.Within, known))
+			g.line.fault("Within", g.Within, groupUnknown, ls.offer(g.Within, func() []string { return names(ls.plan.Groups, func(g rules.Group) string { return g.Name }) }))
 			continue
 		}
 		path := []string{g.Within}
-		for o, n := ls.groups[key(g.Within)], 0; o != nil && n <= len(ls.groups); o, n = ls.groups[key(o.Within)], n+1 {
+		for o := ls.groups[key(g.Within)]; o != nil; o = ls.groups[key(o.Within)] {
 			if key(o.Name) == key(g.Name) {
 				g.line.fault("Within", g.Within, groupCycle, strings.Join(path, ", "))
+				break
+			}
+			if len(path) > mostDeep {
+				g.line.fault("Within", g.Within, groupDeep, strconv.Itoa(mostDeep))
 				break
 			}
 			path = append(path, o.Within)
 		}
 	}
 }
+
+// mostDeep is how deep groups may lie within each other.
+const mostDeep = 50
 
 // read reads one row of Limits.
 func (ls *limits) read(l *line) {
@@ -143,34 +199,30 @@ func (ls *limits) read(l *line) {
 	if w := l.choice("Rule"); w != "" {
 		lim.Kind = rules.Named(w)
 	}
-	concerned := ls.appliesTo(l, &lim)
-	ls.stages(l, &lim, concerned)
-	ls.where(l, &lim, concerned)
+	sc := ls.appliesTo(l, &lim)
+	ls.stages(l, &lim, sc)
+	ls.where(l, &lim, sc)
 	numbers(l, &lim)
 	lim.Clock = clockOf(l, &lim)
 	choices(l, &lim)
 	words := ls.citation(l, &lim)
-	var shared [][]cell.Reading
 	hidden := l.row.hidden
 	if name := l.words("Table"); name != "" {
 		if tt := ls.tables[key(name)]; tt == nil && len(ls.unread["Tables"]) > 0 {
 			l.suffer(ls.unread["Tables"])
 		} else if tt == nil {
-			var known []string
-			for _, o := range ls.tables {
-				known = append(known, o.Name)
-			}
-			sort.Strings(known)
-			l.fault("Table", name, tableUnknown, meant(name, known))
+			l.fault("Table", name, tableUnknown, ls.offer(name, ls.tableNames))
 		} else {
 			lim.Table = &tt.Table
 			l.suffer(tt.because)
-			shared, hidden = append(shared, tt.readings), hidden || tt.hidden
+			hidden = hidden || tt.hidden
+			sc.give("table "+key(name), tt.readings)
 		}
 	}
-	for g, n := ls.groups[key(lim.Group)], 0; lim.Group != "" && g != nil && n <= len(ls.groups); g, n = ls.groups[key(g.Within)], n+1 {
+	for g, n := ls.groups[key(lim.Group)], 0; lim.Group != "" && g != nil && n <= mostDeep; g, n = ls.groups[key(g.Within)], n+1 {
 		l.suffer(g.line.because)
-		shared, hidden = append(shared, g.line.readings), hidden || g.line.row.hidden
+		hidden = hidden || g.line.row.hidden
+		sc.give("group "+key(g.Name), g.line.readings)
 	}
 	if lim.Kind != nil {
 		needs(l, lim.Kind)
@@ -194,13 +246,30 @@ func (ls *limits) read(l *line) {
 		lim.Typed[k] = v
 	}
 	ls.plan.Limits = append(ls.plan.Limits, lim)
-	shared = append([][]cell.Reading{l.readings}, shared...)
-	for _, p := range concerned {
-		if hidden {
+	sc.give("", l.readings)
+	if hidden {
+		for _, p := range sc.products {
 			p.suffer(l.because)
 		}
-		p.readings = append(p.readings, shared...)
 	}
+}
+
+// give adds readings to those of a scope; those of a table or group (which have a name) once.
+func (sc *scope) give(name string, readings []cell.Reading) {
+	if name != "" && sc.given[name] {
+		return
+	}
+	sc.given[name] = true
+	sc.readings = append(sc.readings, readings...)
+}
+
+func (ls *limits) tableNames() []string {
+	var known []string
+	for _, o := range ls.tables {
+		known = append(known, o.Name)
+	}
+	sort.Strings(known)
+	return known
 }
 
 // verb fits a sentence of its own behind a quoted text.
@@ -211,51 +280,50 @@ func verb(msg string, quoted bool) string {
 	return strings.ToUpper(msg[:1]) + msg[1:]
 }
 
-// appliesTo reads whom a limit is for and gives those products.
-func (ls *limits) appliesTo(l *line, lim *rules.Limit) []*product {
+// appliesTo reads whom a limit is for; the scope of nobody is empty.
+func (ls *limits) appliesTo(l *line, lim *rules.Limit) *scope {
 	typed := l.words("Applies to")
 	head, family, named := strings.Cut(typed, ":")
 	switch {
-	case typed == "":
-		return nil
-	case ls.blind():
-		return nil
+	case typed == "" || ls.blind():
+		return ls.scope("", nil)
 	case key(typed) == "all":
 		lim.Applies.All = true
-		return ls.products
+		return ls.scope("all", ls.products)
 	case named && key(head) == "family":
-		var out []*product
-		var known []string
-		for _, p := range ls.products {
-			if p.Family != "" && key(p.Family) == key(family) {
-				out = append(out, p)
-				lim.Applies.Family = p.Family
-			}
-			known = append(known, p.Family)
+		ps := ls.families[key(family)]
+		if key(family) == "" || len(ps) == 0 {
+			l.fault("Applies to", typed, familyUnknown, ls.offer(family, ls.familyNames))
+			lim.Applies.Family = ls.near(family, ls.familyNames) // its products cannot be told met
+			return ls.scope("", nil)
 		}
-		if len(out) == 0 {
-			l.fault("Applies to", typed, familyUnknown, meant(family, known))
-			lim.Applies.Family = nearest(family, known) // its products cannot be told met
-		}
-		return out
+		lim.Applies.Family = ps[0].Family
+		return ls.scope("family "+key(family), ps)
 	}
 	if p := ls.byName[key(typed)]; p != nil {
 		lim.Applies.Product = p.Name
-		return []*product{p}
+		return ls.scope("product "+key(typed), []*product{p})
 	}
-	hint := meant(typed, append([]string{"all"}, ls.productNames()...))
-	for _, p := range ls.products {
-		if key(p.Family) == key(typed) {
-			hint = "; did you mean family: " + p.Family + "?"
-		}
+	hint := ls.offer(typed, func() []string { return append([]string{"all"}, ls.productNames()...) })
+	if ps := ls.families[key(typed)]; len(ps) > 0 {
+		hint = "; did you mean family: " + ps[0].Family + "?"
 	}
 	l.fault("Applies to", typed, appliesUnknown, hint)
-	lim.Applies.Product = nearest(typed, ls.productNames())
-	return nil
+	lim.Applies.Product = ls.near(typed, ls.productNames)
+	return ls.scope("", nil)
+}
+
+func (ls *limits) familyNames() []string {
+	var known []string
+	for _, ps := range ls.families {
+		known = append(known, ps[0].Family)
+	}
+	sort.Strings(known)
+	return known
 }
 
 // stages reads a stage, several joined by +, or a pair.
-func (ls *limits) stages(l *line, lim *rules.Limit, concerned []*product) {
+func (ls *limits) stages(l *line, lim *rules.Limit, sc *scope) {
 	typed := l.words("Stage")
 	if typed == "" {
 		if lim.Kind != nil && lim.Kind.Uses("Stage") && lim.Kind != rules.Delay && lim.Kind != rules.Duration {
@@ -288,29 +356,22 @@ func (ls *limits) stages(l *line, lim *rules.Limit, concerned []*product) {
 			}
 		}
 	}
-	if !l.sound() {
-		return
+	if !l.sound() || sc.faulty || len(sc.products) == 0 {
+		return // the stages of products with faults may be what is at fault
 	}
-	for _, p := range concerned { // one product with one of the stages is enough
-		if len(p.because) > 0 {
-			return // its stages may be what is at fault
-		}
-		for i := range p.Steps {
-			for _, s := range append(lim.Stages, lim.Then) {
-				if s != nil && p.Steps[i].Stage == s {
-					return
-				}
-			}
+	for _, st := range lim.Stages { // one product with one of the stages is enough
+		if sc.stages[st] {
+			return
 		}
 	}
-	e := stageNowhere.problem(l.at("Stage"), cell.Fault, "Stage", typed)
-	if len(concerned) > 0 {
-		ls.add(e) // the row itself is sound: its verdict is not applicable, or cannot tell
+	if lim.Then == nil || !sc.stages[lim.Then] {
+		// the row itself is sound: its verdict is not applicable, or cannot tell
+		ls.add(stageNowhere.problem(l.at("Stage"), cell.Fault, "Stage", typed))
 	}
 }
 
 // where reads which places a limit is about.
-func (ls *limits) where(l *line, lim *rules.Limit, concerned []*product) {
+func (ls *limits) where(l *line, lim *rules.Limit, sc *scope) {
 	typed := l.words("Where")
 	if typed == "" {
 		lim.Where.Name = whereWords[0]
@@ -325,36 +386,38 @@ func (ls *limits) where(l *line, lim *rules.Limit, concerned []*product) {
 			return
 		}
 	}
-	if len(concerned) == 0 {
-		lim.Where.Name = typed // nobody knows whose point it would be
-		return
+	lim.Where.Name = typed
+	if len(sc.products) == 0 {
+		return // nobody knows whose point it would be
 	}
-	lacking, have := "", 0
-	known := append([]string(nil), whereWords...)
-	for _, p := range concerned {
-		found := false
-		for _, pt := range p.Points {
-			known = append(known, pt.Name)
-			if key(pt.Name) == key(typed) {
-				lim.Where.Name, found = pt.Name, true
-			}
-		}
-		if found {
-			have++
-		} else if lacking == "" {
-			lacking = p.Name
-		}
-	}
-	switch {
-	case have == 0 && len(ls.unread["Points"]) > 0:
-		lim.Where.Name = typed
+	switch pt := sc.points[key(typed)]; {
+	case pt == nil && len(ls.unread["Points"]) > 0:
 		l.suffer(ls.unread["Points"])
-	case have == 0:
-		lim.Where.Name = typed
-		l.fault("Where", typed, whereUnknown, meant(typed, known))
-	case lacking != "":
-		l.remark(cell.Warning, "Where", typed, whereLacking, lacking)
+	case pt == nil:
+		l.fault("Where", typed, whereUnknown, ls.offer(typed, func() []string {
+			known := append([]string(nil), whereWords...)
+			for _, p := range sc.points {
+				known = append(known, p.name)
+			}
+			sort.Strings(known)
+			return known
+		}))
+	default:
+		lim.Where.Name = pt.name
+		if pt.n < len(sc.products) {
+			l.remark(cell.Warning, "Where", typed, whereLacking, sc.without(key(typed)))
+		}
 	}
+}
+
+// without names the first product that lacks a point.
+func (sc *scope) without(point string) string {
+	for _, p := range sc.products {
+		if p.points[point] == 0 {
+			return p.Name
+		}
+	}
+	return ""
 }
 
 // numbers reads the columns of numbers, and keeps each as typed.

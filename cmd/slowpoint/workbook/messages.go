@@ -84,6 +84,7 @@ var (
 
 	// steps, faces, courses
 	stepUnknown    = saying{"is not a step of the process {1}{2}", "correct the name"}
+	tooManySteps   = saying{"has more than {1} steps", "divide the process"}
 	stepTwice      = saying{"is there twice in the process {1}; the first is in row {2}", "give each step of a process a name of its own"}
 	noMedium       = saying{"Temperature is missing: {1} needs a Temperature or a Course", "fill one of the two"}
 	bothMedia      = saying{"is given beside the temperature {1}", "keep Temperature or Course, not both"}
@@ -127,6 +128,7 @@ var (
 	clauseDecimal  = saying{"looks as if the spreadsheet had turned the {1} into a decimal number: 1.10 becomes 1.1", "type it as text (an apostrophe in front), as the code prints it"}
 	groupUnknown   = saying{"is not a group of any limit or row of Groups{1}", "correct the name"}
 	groupCycle     = saying{"lies within itself by way of {1}", "let groups lie within each other in one direction only"}
+	groupDeep      = saying{"lies more than {1} groups deep", "let groups lie within each other less deep"}
 	groupEmpty     = saying{"is a group that no limit and no other group belongs to", "name it in the column Group of Limits, or take the row out"}
 )
 
@@ -168,8 +170,32 @@ func meant(word string, known []string) string {
 	return ""
 }
 
+// mostOffers is how many names are compared with misspelt ones in lists that grow with the plan; a plan that needs more has another mistake.
+const mostOffers = 500_000
+
+// offer is meant for lists that grow with the plan.
+func (r *reader) offer(word string, known func() []string) string {
+	if n := r.near(word, known); n != "" {
+		return "; did you mean " + n + "?"
+	}
+	return ""
+}
+
+// near is nearest for such lists.
+func (r *reader) near(word string, known func() []string) string {
+	if r.offers > mostOffers {
+		return ""
+	}
+	list := known()
+	r.offers += 100 + len(list)
+	return nearest(word, list)
+}
+
 // nearest is the known word with the fewest edits from word, if those are few enough to be a slip; the first of equals.
 func nearest(word string, known []string) string {
+	if len(word) > 200 {
+		return ""
+	}
 	w := []rune(key(word))
 	best, least := "", 1+len(w)/3
 	for _, k := range known {

@@ -20,13 +20,7 @@ type product struct {
 }
 
 // suffer keeps faults that concern the product.
-func (p *product) suffer(es cell.Errors) {
-	for _, e := range es {
-		if e.Level == cell.Fault {
-			p.because.Add(e)
-		}
-	}
-}
+func (p *product) suffer(es cell.Errors) { reasons(&p.because, es) }
 
 func (r *reader) productNames() []string {
 	return names(r.products, func(p *product) string { return p.Name })
@@ -47,7 +41,7 @@ var sizes = []struct {
 
 // readProducts reads the sheet Products, row by row.
 func (r *reader) readProducts() {
-	r.byName = map[string]*product{}
+	r.byName, r.users, r.families = map[string]*product{}, map[string][]*product{}, map[string][]*product{}
 	t := r.tables["Products"]
 	if t == nil {
 		return
@@ -69,6 +63,8 @@ func (r *reader) readProducts() {
 		p.Note = l.words("Note")
 		p.because = l.because
 		r.products = append(r.products, p)
+		r.users[key(p.Process)] = append(r.users[key(p.Process)], p)
+		r.families[key(p.Family)] = append(r.families[key(p.Family)], p)
 		if p.Name != "" && r.byName[key(p.Name)] == nil {
 			r.byName[key(p.Name)] = p
 		}
@@ -151,7 +147,7 @@ func (r *reader) readPoints() {
 		p := r.byName[key(owner)]
 		if p == nil {
 			if owner != "" && !r.blind() {
-				l.fault("Product", owner, productUnknown, meant(owner, r.productNames()))
+				l.fault("Product", owner, productUnknown, r.offer(owner, r.productNames))
 			}
 			continue
 		}

@@ -67,6 +67,7 @@ type reader struct {
 	decimal  unit.Decimal
 	formulas map[cell.Ref]*formulas // by sheet and column
 	inOrder  []*formulas
+	offers   int // of names for misspelt ones
 	problems cell.Errors
 
 	height    []cell.Reading // of the item Altitude
@@ -76,6 +77,8 @@ type reader struct {
 	order     []*process // processes in order of their first row
 	products  []*product
 	byName    map[string]*product
+	users     map[string][]*product // by process
+	families  map[string][]*product
 }
 
 // formulas counts the cells of a column that hold the stored result of a formula.
@@ -385,7 +388,7 @@ func (r *reader) notYet() {
 		if s.Refused == "" || t == nil {
 			continue
 		}
-		for _, l := range t.lines {
+		for i, l := range t.lines {
 			var concerned []*product
 			switch s.Name {
 			case "Layers":
@@ -393,7 +396,7 @@ func (r *reader) notYet() {
 				p := r.byName[key(name)]
 				if p == nil {
 					if name != "" && !r.blind() {
-						l.fault("Product", name, productUnknown, meant(name, r.productNames()))
+						l.fault("Product", name, productUnknown, r.offer(name, r.productNames))
 					}
 					continue
 				}
@@ -407,9 +410,15 @@ func (r *reader) notYet() {
 				p.suffer(l.because)
 				continue // the shape itself is refused
 			case "Spread":
-				concerned = r.matching(l.words("Applies to"), "")
+				concerned = r.products
+				if i < 200 {
+					concerned = r.matching(l.words("Applies to"), "")
+				}
 			case "Records":
-				concerned = r.matching(l.words("Product"), l.words("Process"))
+				concerned = r.products
+				if i < 200 {
+					concerned = r.matching(l.words("Product"), l.words("Process"))
+				}
 			}
 			first := s.Columns[0].Heading
 			l.fault(first, l.entry(first).text, sheetNotYet, s.Refused)

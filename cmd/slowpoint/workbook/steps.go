@@ -75,10 +75,10 @@ func (r *reader) readCourses() {
 				c.RH = append(c.RH, *rh)
 			}
 			if (len(c.RH) > 0) != (rh != nil) || rh != nil && len(c.RH) != len(c.C) {
-				l.fault("Relative humidity", l.entry("Relative humidity").text, courseHumidity, name)
+				l.fault("Relative humidity", "", courseHumidity, name)
 			}
 		}
-		c.because = append(c.because, l.because...)
+		reasons(&c.because, l.because)
 		c.readings = append(c.readings, l.readings...)
 	}
 }
@@ -102,10 +102,7 @@ func (r *reader) readSteps() {
 	if t == nil {
 		return
 	}
-	users := map[string][]*product{}
-	for _, p := range r.products {
-		users[key(p.Process)] = append(users[key(p.Process)], p)
-	}
+	users := r.users
 	for i, l := range t.lines {
 		procName, prodName := l.words("Process"), l.words("Product")
 		s := r.readStep(l)
@@ -116,16 +113,19 @@ func (r *reader) readSteps() {
 		pr := r.process(procName)
 		pr.used = users[key(procName)] != nil
 		if !pr.used && !r.blind() {
-			var known []string
-			for _, p := range r.products {
-				known = append(known, p.Process)
-			}
-			near := nearest(procName, known)
-			l.fault("Process", procName, processUnused, meant(procName, known))
+			near := r.near(procName, func() []string { return names(r.products, func(p *product) string { return p.Process }) })
+			offer := ""
 			if near != "" {
-				for _, p := range users[key(near)] { // a misspelt row would be missing from its chain
+				offer = "; did you mean " + near + "?"
+			}
+			l.fault("Process", procName, processUnused, offer)
+			switch {
+			case near != "": // a misspelt row would be missing from its chain
+				for _, p := range users[key(near)] {
 					p.suffer(l.because)
 				}
+			case r.offers > mostOffers && len(r.unread["Steps"]) == 0: // nobody looks any more whose rows these are
+				r.unread["Steps"] = l.because
 			}
 		}
 		k := key(s.Name)
@@ -138,8 +138,28 @@ func (r *reader) readSteps() {
 		} else {
 			pr.by[k] = s
 		}
-		pr.steps = append(pr.steps, s)
+		if len(pr.steps) == mostSteps {
+			l.fault("Process", procName, tooManySteps, strconv.Itoa(mostSteps))
+			pr.steps[0].line.suffer(l.because)
+		}
+		if len(pr.steps) < mostSteps {
+			pr.steps = append(pr.steps, s)
+		}
 	}
+	for _, p := range r.products {
+		p.suffer(r.unread["Steps"])
+	}
+}
+
+// mostSteps is how many steps a process may have.
+const mostSteps = 1000
+
+func (r *reader) processNames() []string {
+	return names(r.order, func(p *process) string { return p.name })
+}
+
+func (pr *process) stepNames() []string {
+	return names(pr.steps, func(s *step) string { return s.Name })
 }
 
 func (r *reader) process(name string) *process {
@@ -156,7 +176,7 @@ func (r *reader) process(name string) *process {
 func (r *reader) orphan(t *table, i int, users map[string][]*product) {
 	h := t.place["Process"]
 	for _, way := range []int{-1, 1} {
-		for j := i + way; j >= 0 && j < len(t.lines); j += way {
+		for j := i + way; j >= 0 && j < len(t.lines) && (j-i)*way <= 100; j += way {
 			if e := t.lines[j].row.at(h.col); e.kind != blank {
 				for _, p := range users[key(e.text)] {
 					p.suffer(t.lines[i].because)
@@ -172,7 +192,7 @@ func (r *reader) stepOfProduct(l *line, pr *process, s *step, name string) {
 	p := r.byName[key(name)]
 	switch {
 	case p == nil:
-		l.fault("Product", name, productUnknown, meant(name, r.productNames()))
+		l.fault("Product", name, productUnknown, r.offer(name, r.productNames))
 		return
 	case key(p.Process) != key(pr.name):
 		l.fault("Product", name, otherProcess, strconv.Quote(p.Process))
@@ -308,7 +328,7 @@ func (r *reader) medium(l *line, x *model.Exposure, durationS float64) *course {
 			return nil
 		}
 		if c == nil {
-			l.fault("Course", name, courseUnknown, meant(name, r.courseNames()))
+			l.fault("Course", name, courseUnknown, r.offer(name, r.courseNames))
 			return nil
 		}
 		l.suffer(c.because)
@@ -416,7 +436,7 @@ func (r *reader) readFaces() {
 		if pr == nil {
 			f.course = r.exposure(l, &f.Exposure, 0)
 			if procName != "" && len(r.unread["Steps"]) == 0 {
-				l.fault("Process", procName, processUnknown, meant(procName, names(r.order, func(p *process) string { return p.name })))
+				l.fault("Process", procName, processUnknown, r.offer(procName, r.processNames))
 			}
 			continue
 		}
@@ -424,7 +444,7 @@ func (r *reader) readFaces() {
 		if s == nil {
 			f.course = r.exposure(l, &f.Exposure, 0)
 			if stepName != "" {
-				l.fault("Step", stepName, stepUnknown, pr.name, meant(stepName, names(pr.steps, func(s *step) string { return s.Name })))
+				l.fault("Step", stepName, stepUnknown, pr.name, r.offer(stepName, pr.stepNames))
 			}
 			r.concern(pr, prodName, l.because)
 			continue
@@ -442,40 +462,49 @@ func (r *reader) readFaces() {
 // hang puts a face on its step, for all products of the process or for one.
 func (r *reader) hang(l *line, pr *process, s *step, f *face, prodName string) {
 	if prodName == "" {
-		for _, o := range s.faces {
-			if f.Face != nil && o.Face == f.Face {
-				l.fault("Face", f.Face.Name, faceTwice, strconv.Itoa(o.At.Row))
-			}
+		if !f.twice(s.faces) && f.Face != nil {
+			s.faces = append(s.faces, f)
+		} else {
+			s.line.suffer(l.because)
 		}
-		s.faces = append(s.faces, f)
 		return
 	}
 	p := r.byName[key(prodName)]
 	switch {
 	case p == nil:
-		l.fault("Product", prodName, productUnknown, meant(prodName, r.productNames()))
+		l.fault("Product", prodName, productUnknown, r.offer(prodName, r.productNames))
 		return
 	case key(p.Process) != key(pr.name):
 		l.fault("Product", prodName, otherProcess, strconv.Quote(p.Process))
 	}
-	for _, o := range p.faces[key(s.Name)] {
-		if f.Face != nil && o.Face == f.Face {
-			l.fault("Face", f.Face.Name, faceTwice, strconv.Itoa(o.At.Row))
-		}
-	}
 	if p.faces == nil {
 		p.faces = map[string][]*face{}
 	}
-	p.faces[key(s.Name)] = append(p.faces[key(s.Name)], f)
+	if !f.twice(p.faces[key(s.Name)]) && f.Face != nil {
+		p.faces[key(s.Name)] = append(p.faces[key(s.Name)], f)
+	}
 	p.suffer(l.because)
+}
+
+// twice tells of a face that a step has a row for already.
+func (f *face) twice(others []*face) bool {
+	for _, o := range others {
+		if f.Face != nil && o.Face == f.Face {
+			f.line.fault("Face", f.Face.Name, faceTwice, strconv.Itoa(o.At.Row))
+			return true
+		}
+	}
+	return false
 }
 
 // concern refuses the products of a process, or the one that is named, for faults of a row.
 func (r *reader) concern(pr *process, prodName string, es cell.Errors) {
-	for _, p := range r.products {
-		if key(p.Process) == key(pr.name) && (prodName == "" || key(prodName) == key(p.Name)) {
-			p.suffer(es)
-		}
+	if p := r.byName[key(prodName)]; p != nil {
+		p.suffer(es)
+		return
+	}
+	for _, p := range r.users[key(pr.name)] {
+		p.suffer(es)
 	}
 }
 
@@ -495,7 +524,7 @@ func (r *reader) chains() {
 		pr := r.processes[key(p.Process)]
 		if pr == nil || len(pr.steps) == 0 {
 			if len(r.unread["Steps"]) == 0 {
-				p.line.fault("Process", p.Process, processUnknown, meant(p.Process, names(r.order, func(p *process) string { return p.name })))
+				p.line.fault("Process", p.Process, processUnknown, r.offer(p.Process, r.processNames))
 				p.suffer(p.line.because)
 			}
 			continue
@@ -510,7 +539,7 @@ func (r *reader) chain(p *product, pr *process) {
 	own := len(p.own) > 0 || len(p.faces) > 0
 	for k, s := range p.own {
 		if pr.by[k] == nil {
-			s.line.fault("Step", s.Name, stepUnknown, pr.name, meant(s.Name, names(pr.steps, func(s *step) string { return s.Name })))
+			s.line.fault("Step", s.Name, stepUnknown, pr.name, r.offer(s.Name, pr.stepNames))
 			p.suffer(s.line.because)
 		}
 	}

@@ -3,6 +3,7 @@ package workbook
 import (
 	"fmt"
 	"math"
+	"sort"
 	"strconv"
 	"strings"
 
@@ -17,6 +18,7 @@ type table struct {
 	head  int              // row number of the headings
 	place map[string]*head // by heading without unit
 	lines []*line
+	cut   bool // it has more rows than are read
 }
 
 // head is one column of a table.
@@ -299,6 +301,11 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 		if !filled || l.stray() {
 			continue
 		}
+		if len(t.lines) == t.sheet.most() {
+			t.cut = true
+			r.cannotRead(t.sheet, tooManyRows.problem(t.ref(row.n, 0), cell.Fault, "", "", strconv.Itoa(t.sheet.most())))
+			break
+		}
 		l.suffer(all)
 		if row.hidden {
 			l.fault("", "", hiddenRow)
@@ -363,23 +370,32 @@ func (r *reader) mergedRows(t *table) {
 		}
 		e := mergedCells.problem(t.ref(b.top, b.left), cell.Fault, "", "", t.grid.block(b))
 		r.add(e)
-		for _, l := range t.lines {
-			if l.row.n >= b.top && l.row.n <= b.bottom {
-				l.because.Add(e)
+		for i := sort.Search(len(t.lines), func(i int) bool { return t.lines[i].row.n >= b.top }); i < len(t.lines) && t.lines[i].row.n <= b.bottom; i++ {
+			t.lines[i].suffer(cell.Errors{e})
+			if l := t.lines[i]; len(l.merged) < mostReasons {
 				l.merged = append(l.merged, b)
 			}
 		}
 	}
 }
 
-// suffer adds faults that are told already.
-func (l *line) suffer(es cell.Errors) {
+// mostReasons is how many faults a row, a food, a course or a product keeps as its reasons; all of them are told anyway.
+const mostReasons = 40
+
+// reasons adds the faults among es to those of a row, a food, a course or a product.
+func reasons(to *cell.Errors, es cell.Errors) {
 	for _, e := range es {
+		if len(*to) >= mostReasons {
+			return
+		}
 		if e.Level == cell.Fault {
-			l.because.Add(e)
+			to.Add(e)
 		}
 	}
 }
+
+// suffer adds faults that are told already.
+func (l *line) suffer(es cell.Errors) { reasons(&l.because, es) }
 
 // sound tells whether nothing is wrong with the row.
 func (l *line) sound() bool { return len(l.because) == 0 }
