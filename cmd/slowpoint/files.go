@@ -77,7 +77,10 @@ func makeFolder(path string) error {
 // everything else becomes _, and a number is added where two collide (also when only their case differs).
 func fileNames(products []string) []string {
 	out := make([]string, len(products))
-	taken := map[string]bool{"summary": true, "results": true, "report": true}
+	taken := map[string]bool{"summary": true, "results": true, "report": true, "con": true, "prn": true, "aux": true, "nul": true} // the last: devices of Windows
+	for i := range 9 {
+		taken[fmt.Sprintf("com%d", i+1)], taken[fmt.Sprintf("lpt%d", i+1)] = true, true
+	}
 	for i, p := range products {
 		name := strings.Map(func(r rune) rune {
 			if unicode.IsLetter(r) || unicode.IsDigit(r) || r == '-' || r == '_' {

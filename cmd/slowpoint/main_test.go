@@ -1,0 +1,357 @@
+package main
+
+import (
+	"bytes"
+	"encoding/csv"
+	"encoding/json"
+	"errors"
+	"fmt"
+	"io"
+	"maps"
+	"os"
+	"os/exec"
+	"path/filepath"
+	"strconv"
+	"strings"
+	"syscall"
+	"testing"
+	"time"
+
+	"github.com/google/go-cmp/cmp"
+	"github.com/rogpeppe/go-internal/testscript"
+)
+
+// TestMain lets scripts and tests start this very program as the command slowpoint.
+func TestMain(m *testing.M) { testscript.Main(m, map[string]func(){"slowpoint": main}) }
+
+// TestScripts runs testdata/script: what a person types, and what then is on the screen and in the folder.
+func TestScripts(t *testing.T) {
+	testscript.Run(t, testscript.Params{Dir: "testdata/script", Cmds: map[string]func(*testscript.TestScript, bool, []string){
+		"exits": exits, "same": same, "findings": sameFindings, "pdf": pdfHolds, "key": keyIs, "clean": clean, "full": full,
+	}})
+}
+
+// exits runs a command and wants exactly this exit code: exits 2 slowpoint read plan.
+func exits(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) < 2 {
+		ts.Fatalf("usage: exits CODE COMMAND ARGUMENT…")
+	}
+	code := 0
+	if err := ts.Exec(args[1], args[2:]...); err != nil {
+		var e *exec.ExitError
+		if !errors.As(err, &e) {
+			ts.Fatalf("%v", err)
+		}
+		code = e.ExitCode()
+	}
+	if want, err := strconv.Atoi(args[0]); err != nil || code != want {
+		ts.Fatalf("exit code %d, want %s\n%s%s", code, args[0], ts.ReadFile("stdout"), ts.ReadFile("stderr"))
+	}
+}
+
+// same wants two folders with the same files, byte for byte.
+func same(ts *testscript.TestScript, neg bool, args []string) {
+	a, b := folder(ts, args[0]), folder(ts, args[1])
+	if len(a) == 0 {
+		ts.Fatalf("%s is empty", args[0])
+	}
+	if maps.EqualFunc(a, b, bytes.Equal) != neg {
+		return
+	}
+	for name := range a {
+		ts.Logf("%s: the same %v", name, bytes.Equal(a[name], b[name]))
+	}
+	ts.Fatalf("%s has %d files, %s has %d", args[0], len(a), args[1], len(b))
+}
+
+// folder reads all files of a folder.
+func folder(ts *testscript.TestScript, name string) map[string][]byte {
+	files := map[string][]byte{}
+	list, err := os.ReadDir(ts.MkAbs(name))
+	ts.Check(err)
+	for _, f := range list {
+		b, err := os.ReadFile(filepath.Join(ts.MkAbs(name), f.Name()))
+		ts.Check(err)
+		files[f.Name()] = b
+	}
+	return files
+}
+
+// sameFindings wants two results.json with the same verdicts, findings and groups.
+func sameFindings(ts *testscript.TestScript, _ bool, args []string) {
+	var all [2]any
+	for i := range all {
+		var r struct {
+			Products []struct {
+				Product, Verdict string
+				Findings, Groups []map[string]any
+			}
+		}
+		ts.Check(json.Unmarshal([]byte(ts.ReadFile(args[i])), &r))
+		if len(r.Products) == 0 {
+			ts.Fatalf("%s has no product", args[i])
+		}
+		for _, p := range r.Products {
+			if len(p.Findings) == 0 {
+				ts.Fatalf("%s has no findings", p.Product)
+			}
+			for _, f := range p.Findings {
+				delete(f, "cells") // a folder of CSV has its heading in row 1, a workbook perhaps elsewhere
+			}
+		}
+		all[i] = r
+	}
+	if d := cmp.Diff(all[0], all[1]); d != "" {
+		ts.Fatalf("different findings:\n%s", d)
+	}
+}
+
+// keyIs wants a key of a JSON file with a value: key results.json plan.name demo.
+func keyIs(ts *testscript.TestScript, neg bool, args []string) {
+	var v any
+	ts.Check(json.Unmarshal([]byte(ts.ReadFile(args[0])), &v))
+	for _, k := range strings.Split(args[1], ".") {
+		switch x := v.(type) {
+		case map[string]any:
+			v = x[k]
+		case []any:
+			i, err := strconv.Atoi(k)
+			ts.Check(err)
+			if i >= len(x) {
+				ts.Fatalf("%s has %d entries", args[1], len(x))
+			}
+			v = x[i]
+		default:
+			ts.Fatalf("%s has no %s", args[0], args[1])
+		}
+	}
+	if got := fmt.Sprint(v); (got == args[2]) == neg {
+		ts.Fatalf("%s is %s, want %s", args[1], got, args[2])
+	}
+}
+
+// clean wants a folder without a temporary file.
+func clean(ts *testscript.TestScript, _ bool, args []string) {
+	list, err := os.ReadDir(ts.MkAbs(args[0]))
+	ts.Check(err)
+	for _, f := range list {
+		if strings.HasPrefix(f.Name(), ".slowpoint-") {
+			ts.Fatalf("%s is left over in %s", f.Name(), args[0])
+		}
+	}
+}
+
+// full runs a command with its standard output on a full device, and wants exit code 3.
+func full(ts *testscript.TestScript, _ bool, args []string) {
+	device, err := os.OpenFile("/dev/full", os.O_WRONLY, 0)
+	if err != nil {
+		ts.Logf("this machine has no full device")
+		return
+	}
+	defer device.Close()
+	var errs bytes.Buffer
+	if code := run(args, nil, device, &errs); code != exitFault || errs.Len() == 0 {
+		ts.Fatalf("exit code %d\n%s", code, &errs)
+	}
+}
+
+// pdfHolds wants words in the text of a PDF: pdf file.pdf WORDS….
+func pdfHolds(ts *testscript.TestScript, neg bool, args []string) {
+	tool := poppler("pdftotext", ts.Fatalf)
+	if tool == "" {
+		return
+	}
+	out, err := exec.Command(tool, "-layout", ts.MkAbs(args[0]), "-").CombinedOutput()
+	if err != nil {
+		ts.Fatalf("%s: %v %s", args[0], err, out)
+	}
+	for _, w := range args[1:] {
+		if strings.Contains(strings.Join(strings.Fields(string(out)), " "), w) == neg {
+			ts.Fatalf("%s: %q found is %v\n%s", args[0], w, neg, out)
+		}
+	}
+}
+
+// poppler finds a tool that reads PDFs; "" means: leave this check out. Where all checks are run, it must be there.
+func poppler(name string, fatal func(string, ...any)) string {
+	tool, err := exec.LookPath(name)
+	if err != nil && os.Getenv("CI") != "" {
+		fatal("%s is missing: install poppler-utils", name)
+	}
+	if err != nil {
+		return ""
+	}
+	return tool
+}
+
+// kitchen writes an invented plan of many bricks, each with a size of its own.
+func kitchen(t *testing.T, folder string, n int) {
+	t.Helper()
+	sheets := map[string][][]string{
+		"Products": {{"Product", "Process", "Shape", "Thickness (mm)", "Width (mm)", "Length (mm)", "Food", "Start temperature (°C)"}},
+		"Steps": {{"Process", "Step", "Stage", "Duration (min)", "Surroundings", "Temperature (°C)", "Temperature is", "Film coefficient (W/m²·K)"},
+			{"Roast", "oven", "cook", "150", "film", "130", "measured", "21"}, {"Roast", "chiller", "cool", "300", "film", "2", "measured", "17"}},
+		"Limits": {{"Limit", "Rule", "Stage", "Applies to", "From (°C)", "To (°C)", "Time (min)", "Clock starts", "Code", "Clause", "Edition"},
+			{"57 to 21 °C", "cool", "cool", "all", "57", "21", "120", "crossing", "own study", "1", "1"}},
+	}
+	for i := range n {
+		sheets["Products"] = append(sheets["Products"], []string{fmt.Sprintf("Joint %03d", i), "Roast", "brick",
+			fmt.Sprint(60 + i%23), fmt.Sprint(85 + i%31), fmt.Sprint(140 + i%57), "Pork, loin, whole, lean, raw", "5"})
+	}
+	for name, rows := range sheets {
+		var b bytes.Buffer
+		if err := csv.NewWriter(&b).WriteAll(rows); err != nil {
+			t.Fatal(err)
+		}
+		if err := os.MkdirAll(folder, 0o755); err != nil {
+			t.Fatal(err)
+		}
+		if err := os.WriteFile(filepath.Join(folder, name+".csv"), b.Bytes(), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+}
+
+// TestInterrupt presses Ctrl-C in the middle of a long plan: what is finished is whole, and nothing else is left.
+func TestInterrupt(t *testing.T) {
+	dir := t.TempDir()
+	kitchen(t, filepath.Join(dir, "plan"), 600)
+	out := filepath.Join(dir, "out")
+	cmd := exec.Command("slowpoint", "check", filepath.Join(dir, "plan"), "--out", out)
+	var errs, told bytes.Buffer
+	cmd.Stderr, cmd.Stdout = &errs, &told
+	if err := cmd.Start(); err != nil {
+		t.Fatal(err)
+	}
+	finished := func() []string {
+		list, _ := filepath.Glob(filepath.Join(out, "*.pdf"))
+		return list
+	}
+	for start := time.Now(); len(finished()) < 3; time.Sleep(5 * time.Millisecond) {
+		if time.Since(start) > time.Minute {
+			cmd.Process.Kill()
+			t.Fatalf("no reports after a minute: %s", &errs)
+		}
+	}
+	if err := cmd.Process.Signal(os.Interrupt); err != nil {
+		t.Fatal(err)
+	}
+	var e *exec.ExitError
+	if err := cmd.Wait(); !errors.As(err, &e) || e.ExitCode() != exitFault {
+		t.Fatalf("ended with %v, want exit code %d\n%s%s", err, exitFault, &errs, &told)
+	}
+	if !strings.Contains(errs.String(), "stopped") || told.Len() > 0 {
+		t.Errorf("standard error: %s\nstandard output: %s", &errs, &told)
+	}
+	list, err := os.ReadDir(out)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, f := range list {
+		if !strings.HasPrefix(f.Name(), "Joint_") {
+			t.Errorf("%s is left over", f.Name())
+		}
+	}
+	pdfs := finished()
+	if len(pdfs) < 3 || len(pdfs) >= 600 {
+		t.Errorf("%d reports: it was not stopped on the way", len(pdfs))
+	}
+	tool := poppler("pdfinfo", t.Fatalf)
+	for _, f := range pdfs {
+		b, err := os.ReadFile(f)
+		if err != nil || !bytes.HasPrefix(b, []byte("%PDF-")) || !bytes.HasSuffix(bytes.TrimSpace(b), []byte("%%EOF")) {
+			t.Errorf("%s is not whole: %v", f, err)
+		}
+		if tool != "" {
+			if out, err := exec.Command(tool, f).CombinedOutput(); err != nil || bytes.Contains(out, []byte("Error")) {
+				t.Errorf("%s cannot be read: %v %s", f, err, out)
+			}
+		}
+	}
+}
+
+// TestDemo holds the demo to what it is there to show: every must limit met, one advice limit not.
+func TestDemo(t *testing.T) {
+	dir := t.TempDir()
+	var out, errs bytes.Buffer
+	if code := run([]string{"check", "--out", dir, "--no-pdf"}, nil, &out, &errs); code != exitMet || errs.Len() > 0 {
+		t.Fatalf("exit code %d\n%s", code, &errs)
+	}
+	b, err := os.ReadFile(filepath.Join(dir, "results.json"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	var r struct {
+		Products []struct {
+			Verdict  string
+			Findings []struct{ Limit, Level, Verdict string }
+		}
+	}
+	if err := json.Unmarshal(b, &r); err != nil {
+		t.Fatal(err)
+	}
+	var not []string
+	for _, p := range r.Products {
+		if p.Verdict != "met" {
+			t.Errorf("verdict %s", p.Verdict)
+		}
+		for _, f := range p.Findings {
+			if f.Verdict != "met" && f.Verdict != "not applicable" {
+				not = append(not, f.Level+" "+f.Verdict+": "+f.Limit)
+			}
+		}
+	}
+	if want := []string{"advice not met: UK cook-chill 1989: chilling starts within 30 min"}; len(r.Products) != 5 || cmp.Diff(want, not) != "" {
+		t.Errorf("%d products; not met: %q, want %q", len(r.Products), not, want)
+	}
+	if !strings.Contains(out.String(), "advice not met: UK cook-chill 1989") {
+		t.Errorf("the advice is not told:\n%s", &out)
+	}
+}
+
+func TestFileNames(t *testing.T) {
+	long := strings.Repeat("ż", 200)
+	for _, c := range []struct {
+		name       string
+		have, want []string
+	}{
+		{"letters of any script stay", []string{"Żurek", "Борщ", "粥", "Crème brûlée"}, []string{"Żurek", "Борщ", "粥", "Crème_brûlée"}},
+		{"nothing leads out of the folder", []string{"../../etc/passwd", `a\b`, ".hidden", "a:b*c?"}, []string{"______etc_passwd", "a_b", "_hidden", "a_b_c_"}},
+		{"collisions are numbered", []string{"a b", "a_b", "A_B", "a/b"}, []string{"a_b", "a_b_2", "A_B_3", "a_b_4"}},
+		{"names of other results are taken", []string{"summary", "Results", "report"}, []string{"summary_2", "Results_2", "report_2"}},
+		{"names of devices are taken", []string{"con", "LPT1"}, []string{"con_2", "LPT1_2"}},
+		{"a number that is taken already", []string{"a_2", "a", "a"}, []string{"a_2", "a", "a_3"}},
+		{"emoji", []string{"🍲", "🍜"}, []string{"_", "__2"}},
+		{"long names are cut", []string{long, long}, []string{long[:120], long[:120] + "_2"}},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			if d := cmp.Diff(c.want, fileNames(c.have)); d != "" {
+				t.Error(d)
+			}
+		})
+	}
+}
+
+func TestWriteWhole(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "kept")
+	write := func(text string, err error) error {
+		return writeWhole(path, func(w io.Writer) error {
+			if _, err := io.WriteString(w, text); err != nil {
+				return err
+			}
+			return err
+		})
+	}
+	if err := write("first", nil); err != nil {
+		t.Fatal(err)
+	}
+	if err := write("half", &os.PathError{Op: "write", Path: "hidden", Err: syscall.ENOSPC}); err == nil || strings.Contains(err.Error(), "hidden") || !strings.Contains(err.Error(), "no space left") {
+		t.Errorf("%v", err)
+	}
+	if b, err := os.ReadFile(path); err != nil || string(b) != "first" {
+		t.Errorf("%q %v", b, err)
+	}
+	if list, _ := os.ReadDir(filepath.Dir(path)); len(list) != 1 {
+		t.Errorf("%d files are left", len(list))
+	}
+}
