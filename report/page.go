@@ -330,6 +330,9 @@ func total(cols []col) float64 {
 
 func btof(b bool) float64 { return float64(btoi(b)) }
 
+// pairGap is how much closer pairs stand than the rows of a table, mm.
+const pairGap = 0.6
+
 // pairs writes names and values in two columns, leaving out blank values.
 func (d *doc) pairs(rows [][2]string, wide float64) {
 	for _, line := range rows {
@@ -345,6 +348,7 @@ func (d *doc) pairs(rows [][2]string, wide float64) {
 		}
 		d.need(float64(max(len(a), len(b)))*height(small) + 1)
 		d.row(cols, [][]string{a, b}, small, false)
+		d.y -= pairGap
 	}
 	d.y += 1.5
 }
@@ -360,7 +364,7 @@ func (d *doc) pairsHeight(rows [][2]string, wide float64) float64 {
 	for _, line := range rows {
 		if line[1] != "" {
 			a, b := d.pair(line, wide)
-			h += float64(max(len(a), len(b)))*height(small) + 1
+			h += float64(max(len(a), len(b)))*height(small) + 1 - pairGap
 		}
 	}
 	return h

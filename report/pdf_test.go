@@ -215,6 +215,25 @@ func TestProductPDF(t *testing.T) {
 	}
 }
 
+// A finding of the second run is decided in a step of the second run, which may end later than the first.
+func TestStepOfSecondRun(t *testing.T) {
+	p := roast(t, model.Slab, rules.NotMet)
+	late := *p.Low
+	late.Spans = append([]model.Span(nil), p.Low.Spans...)
+	late.Spans[0].EndS += 700
+	p.Low = &late
+	x := &sheet{p: p, decides: p.decides()}
+	at := p.History.Spans[0].EndS + 600
+	for _, c := range []struct {
+		low  bool
+		want string
+	}{{false, "Rest on the bench"}, {true, "Roast"}} {
+		if got := x.stepAt(&rules.Finding{AtS: &at, LowConductivity: c.low}); got != c.want {
+			t.Errorf("second run %v: %s, want %s", c.low, got, c.want)
+		}
+	}
+}
+
 // BenchmarkReport writes one product's report of a usual size: about 250 cells of input and 60 known answers.
 func BenchmarkReport(b *testing.B) {
 	h, p := roastHead(), roast(b, model.Slab, rules.NotMet)

@@ -225,7 +225,7 @@ func (x *sheet) checks() []string {
 		}
 		when := say("check any time")
 		if finite(f.AtS) {
-			when = say("check at", duration(*f.AtS, nearest), x.stepAt(*f.AtS))
+			when = say("check at", duration(*f.AtS, nearest), x.stepAt(f))
 		}
 		line := capped(x.clean(say("check", when, place, x.head.plainly(f.Limit))), frameWide-widthMM("1.  ", kitchen, false), kitchen, 3-btoi(x.short))
 		if !slices.Contains(out, line) {
@@ -266,10 +266,17 @@ func instant(f *rules.Finding) float64 {
 	return math.Inf(1)
 }
 
-// stepAt is the name of the step at an instant, s.
-func (x *sheet) stepAt(t float64) string {
-	for _, sp := range x.decides.history.Spans {
-		if t <= sp.EndS+0.5 {
+// stepAt is the name of the step in which a finding is decided, in the run that the finding belongs to.
+func (x *sheet) stepAt(f *rules.Finding) string {
+	h := x.p.History
+	if f.LowConductivity && x.p.Low != nil {
+		h = x.p.Low
+	}
+	if h == nil {
+		return ""
+	}
+	for _, sp := range h.Spans {
+		if *f.AtS <= sp.EndS+0.5 {
 			return sp.Step.Name
 		}
 	}
@@ -505,7 +512,7 @@ func (x *sheet) card(f *rules.Finding) {
 	}
 	when := ""
 	if finite(f.AtS) {
-		when = say("card when", duration(*f.AtS, nearest), x.stepAt(*f.AtS))
+		when = say("card when", duration(*f.AtS, nearest), x.stepAt(f))
 	}
 	rows := [][2]string{
 		{say("card asks"), say("card asks line", kind, h.asks(l), stages(l), whereAsked(l), f.Level)},

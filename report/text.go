@@ -229,7 +229,7 @@ func (t *Text) finding(x *sheet, f *rules.Finding) [][2]string {
 	}
 	when := ""
 	if finite(f.AtS) {
-		when = say("card when", duration(*f.AtS, nearest), x.stepAt(*f.AtS))
+		when = say("card when", duration(*f.AtS, nearest), x.stepAt(f))
 	}
 	return [][2]string{
 		{say("card asks"), say("card asks line", ruleName(l), h.asks(l), stages(l), whereAsked(l), f.Level)},
