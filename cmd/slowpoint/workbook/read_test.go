@@ -1,7 +1,9 @@
 package workbook
 
 import (
+	"archive/zip"
 	"bytes"
+	"encoding/binary"
 	"fmt"
 	"math"
 	"os"
@@ -367,6 +369,99 @@ func TestTooBig(t *testing.T) {
 	}
 	if err := wellFormed(strings.NewReader("<a>" + strings.Repeat(" ", mostBare+1))); err == nil {
 		t.Error("megabytes without an element were taken")
+	}
+}
+
+// TestContainers: files of other kinds are told apart by what they hold, not by their names.
+func TestContainers(t *testing.T) {
+	zipped := func(names ...string) []byte {
+		var b bytes.Buffer
+		w := zip.NewWriter(&b)
+		for _, n := range names {
+			p, _ := w.Create(n)
+			p.Write([]byte("<a/>"))
+		}
+		w.Close()
+		return b.Bytes()
+	}
+	const ole = "\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1"
+	for _, c := range []struct{ name, data, want string }{
+		{"empty", "", "the file is empty"},
+		{"old workbook", ole + "\x00W\x00o", "an old .xls workbook"},
+		{"password", ole + "\x00" + string(utf16("EncryptedPackage")), "protected by a password"},
+		{"OpenDocument", string(zipped("mimetype", "content.xml", "META-INF/manifest.xml")), "OpenDocument file (.ods)"},
+		{"any archive", string(zipped("a.txt")), "an archive, but not an .xlsx workbook"},
+		{"text document", string(zipped("[Content_Types].xml", "word/document.xml")), "not an .xlsx workbook"},
+		{"a part twice", string(zipped("[Content_Types].xml", "xl/workbook.xml", "XL/workbook.xml")), "it is there twice"},
+		{"PDF", "%PDF-1.7", "this is a PDF"},
+		{"CSV", "Product;Process\nStew;Cook\n", "this is a text file"},
+		{"noise", "\x00\x01\x02\x03", "not an .xlsx workbook"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			name := filepath.Join(t.TempDir(), "plan.xlsx")
+			if err := os.WriteFile(name, []byte(c.data), 0o644); err != nil {
+				t.Fatal(err)
+			}
+			if _, err := Read(name); err == nil || !strings.Contains(err.Error(), c.want) || strings.Contains(err.Error(), "\n") {
+				t.Errorf("%v, want %q", err, c.want)
+			}
+		})
+	}
+	if _, err := Read(filepath.Join(t.TempDir(), "nothing.xlsx")); err == nil || !strings.Contains(err.Error(), "no such file") {
+		t.Error(err)
+	}
+	if _, err := Read(t.TempDir()); err == nil || !strings.Contains(err.Error(), "holds no .csv file") {
+		t.Error(err)
+	}
+}
+
+// TestLyingSize: an archive that says its part is small and holds more is damaged, not shortened.
+func TestLyingSize(t *testing.T) {
+	name := filepath.Join(t.TempDir(), "plan.xlsx")
+	newRecipe(t, "").workbook(t, name)
+	data, err := os.ReadFile(name)
+	if err != nil {
+		t.Fatal(err)
+	}
+	const sheet = "xl/worksheets/sheet5.xml"
+	hit := false
+	for i := 0; i+46 < len(data); i++ { // central directory: PK 1 2, unpacked size at 24, length of the name at 28, name at 46
+		if string(data[i:i+4]) == "PK\x01\x02" && strings.HasPrefix(string(data[i+46:]), sheet) {
+			binary.LittleEndian.PutUint32(data[i+24:], 300)
+			hit = true
+		}
+	}
+	if !hit {
+		t.Fatal("no such part")
+	}
+	if _, err := readWorkbook(data); err == nil || !strings.Contains(err.Error(), sheet) {
+		t.Errorf("%v", err)
+	}
+}
+
+// TestRowNumbers: a CSV file shows the rows that a spreadsheet would: blank lines count, line breaks in quotes do not.
+func TestRowNumbers(t *testing.T) {
+	g := csvGrid("Points", []byte("\xef\xbb\xbfProduct,Point\r\n\r\n\"a\nb\",p\r\n,,\r\nc,\"x\r\ny\"\r\nd,q\r\n"))
+	var got []string
+	for _, r := range g.rows {
+		got = append(got, fmt.Sprintf("%d %s", r.n, r.cells[0].text))
+	}
+	if want := "1 Product; 3 a b; 5 c; 6 d"; strings.Join(got, "; ") != want {
+		t.Errorf("%s, want %s", strings.Join(got, "; "), want)
+	}
+}
+
+// TestDelimiters: the sign between cells is found by what the rows hold; a heading may have a comma of its own.
+func TestDelimiters(t *testing.T) {
+	for name, text := range map[string]string{
+		"comma":     "Product,Point,Up (mm)\nBlock,probe,10\n",
+		"semicolon": "Product;Point;Up (mm);# seen, said\nBlock;probe;10,5;a\n",
+		"tab":       "Product\tPoint\tUp (mm)\nBlock\tprobe, left\t10\n",
+	} {
+		g := csvGrid("Points", []byte(text))
+		if len(g.rows) != 2 || len(g.rows[1].cells) < 3 || g.rows[1].cells[0].text != "Block" {
+			t.Errorf("%s: %v %s", name, g.rows, g.refused)
+		}
 	}
 }
 

@@ -78,21 +78,7 @@ func readWorkbook(data []byte) ([]*grid, error) {
 func readBook(byName map[string]*zip.File, m *meter) (*book, map[*zip.File]bool, error) {
 	b, done := &book{}, map[*zip.File]bool{}
 	home := "xl/workbook.xml"
-	links := func(of string) map[string]link {
-		out := map[string]link{}
-		if f := byName[strings.ToLower(path.Join(path.Dir(of), "_rels", path.Base(of)+".rels"))]; f != nil {
-			m.part(f, func(r io.Reader) error { // read again with its errors below
-				return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
-					if e.Name.Local == "Relationship" {
-						out[attr(e, "Id")] = link{attr(e, "Type"), target(of, attr(e, "Target"))}
-					}
-					return nil
-				}, nil)
-			})
-		}
-		return out
-	}
-	for _, l := range links("") {
+	for _, l := range linksOf("", byName, m) {
 		if strings.HasSuffix(l.kind, "/officeDocument") {
 			home = l.part
 		}
@@ -101,7 +87,7 @@ func readBook(byName map[string]*zip.File, m *meter) (*book, map[*zip.File]bool,
 	if f == nil {
 		return nil, nil, errors.New("this is not an .xlsx workbook (a document of another kind?); a plan is an .xlsx workbook, or a folder of .csv files")
 	}
-	parts := links(home)
+	parts := linksOf(home, byName, m)
 	type raw struct{ name, id, state string }
 	var sheets []raw
 	err := m.part(f, func(r io.Reader) error {
@@ -130,6 +116,14 @@ func readBook(byName map[string]*zip.File, m *meter) (*book, map[*zip.File]bool,
 		}
 		b.sheets = append(b.sheets, bookSheet{s.name, l.part, s.state == "hidden" || s.state == "veryHidden"})
 	}
+	if err := b.readShared(parts, byName, m, done); err != nil {
+		return nil, nil, err
+	}
+	return b, done, nil
+}
+
+// readShared reads the texts and styles that all sheets share.
+func (b *book) readShared(parts map[string]link, byName map[string]*zip.File, m *meter, done map[*zip.File]bool) error {
 	for _, l := range parts {
 		f := byName[strings.ToLower(l.part)]
 		var use func(io.Reader) error
@@ -142,14 +136,35 @@ func readBook(byName map[string]*zip.File, m *meter) (*book, map[*zip.File]bool,
 			continue
 		}
 		if f == nil {
-			return nil, nil, damaged(l.part, errors.New("it is missing"))
+			return damaged(l.part, errors.New("it is missing"))
 		}
 		if err := m.part(f, use); err != nil {
-			return nil, nil, err
+			return err
 		}
 		done[f] = true
 	}
-	return b, done, nil
+	return nil
+}
+
+// linksOf reads the relationships of a part (of the whole archive for ""); they are read again, with their errors, at the end.
+func linksOf(part string, byName map[string]*zip.File, m *meter) map[string]link {
+	out := map[string]link{}
+	f := byName[strings.ToLower(path.Join(path.Dir(part), "_rels", path.Base(part)+".rels"))]
+	if part == "" {
+		f = byName["_rels/.rels"]
+	}
+	if f == nil {
+		return out
+	}
+	m.part(f, func(r io.Reader) error {
+		return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
+			if e.Name.Local == "Relationship" {
+				out[attr(e, "Id")] = link{attr(e, "Type"), target(part, attr(e, "Target"))}
+			}
+			return nil
+		}, nil)
+	})
+	return out
 }
 
 // link is a relationship of one part to another.
@@ -348,27 +363,11 @@ func (b *book) sheet(r io.Reader, g *grid, left *int) error {
 		switch e.Name.Local {
 		case "row":
 			flush()
-			n := row.n + 1
-			if a := attr(e, "r"); a != "" {
-				v, err := strconv.Atoi(a)
-				if err != nil {
-					return fmt.Errorf("%q is not a row number", a)
-				}
-				if v < n {
-					return fmt.Errorf("row %d comes after row %d", v, row.n)
-				}
-				n = v
+			next, err := startRow(e, row.n)
+			if err != nil {
+				return err
 			}
-			if n > lastRow {
-				return fmt.Errorf("row %d does not exist in a spreadsheet", n)
-			}
-			hidden := attr(e, "hidden")
-			row, col = gridRow{n: n, hidden: hidden == "1" || hidden == "true"}, 0
-			if row.hidden == false && attr(e, "customHeight") != "" {
-				if h, err := strconv.ParseFloat(attr(e, "ht"), 64); err == nil && h == 0 {
-					row.hidden = true
-				}
-			}
+			row, col = next, 0
 		case "c":
 			if row.n == 0 {
 				return errors.New("a cell stands outside the rows")
@@ -417,6 +416,29 @@ func (b *book) sheet(r io.Reader, g *grid, left *int) error {
 	return err
 }
 
+// startRow reads what a row says of itself, after the row before.
+func startRow(e xml.StartElement, before int) (gridRow, error) {
+	n := before + 1
+	if a := attr(e, "r"); a != "" {
+		v, err := strconv.Atoi(a)
+		if err != nil {
+			return gridRow{}, fmt.Errorf("%q is not a row number", a)
+		}
+		if v < n {
+			return gridRow{}, fmt.Errorf("row %d comes after row %d", v, before)
+		}
+		n = v
+	}
+	if n > lastRow {
+		return gridRow{}, fmt.Errorf("row %d does not exist in a spreadsheet", n)
+	}
+	hidden := attr(e, "hidden") == "1" || attr(e, "hidden") == "true"
+	if h, err := strconv.ParseFloat(attr(e, "ht"), 64); err == nil && h == 0 && attr(e, "customHeight") != "" {
+		hidden = true // a row of no height
+	}
+	return gridRow{n: n, hidden: hidden}, nil
+}
+
 // column reads a cell's name (which must lie in its row) and gives its column, after the one before.
 func column(name string, row, before int) (int, error) {
 	n := before + 1
@@ -462,88 +484,86 @@ func parseBlock(ref string) (block, bool) {
 	return block{l, t, r, bo}, ok && ok2
 }
 
+// stored is what the XML of a cell holds.
+type stored struct {
+	kind, value, inline string
+	formula, hasV       bool
+}
+
 // cell reads one cell up to its end.
 func (b *book) cell(d *xml.Decoder, e xml.StartElement) (entry, error) {
-	var c entry
-	kindWord, value, inline := attr(e, "t"), "", ""
-	hasValue, hasV := false, false
+	in := stored{kind: attr(e, "t")}
 	for depth := 1; depth > 0; {
 		t, err := d.Token()
 		if err != nil {
-			return c, midway(err)
+			return entry{}, midway(err)
 		}
 		switch t := t.(type) {
 		case xml.StartElement:
 			switch t.Name.Local {
 			case "f":
-				c.formula = true
-				if err := d.Skip(); err != nil {
-					return c, midway(err)
-				}
+				in.formula = true
+				err = d.Skip()
 			case "is":
-				if inline, err = richText(d); err != nil {
-					return c, err
-				}
+				in.inline, err = richText(d)
 			case "v":
-				if value, err = charData(d); err != nil {
-					return c, err
-				}
-				hasV, hasValue = true, value != ""
+				in.value, err = charData(d)
+				in.hasV = true
 			default:
 				depth++
+			}
+			if err != nil {
+				return entry{}, midway(err)
 			}
 		case xml.EndElement:
 			depth--
 		}
 	}
+	c, err := b.meaning(in, attr(e, "s"))
 	switch {
-	case kindWord == "s":
-		if !hasValue {
-			break
-		}
-		n, err := strconv.Atoi(strings.TrimSpace(value))
-		if err != nil || n < 0 || n >= len(b.strings) {
-			return c, fmt.Errorf("the cell %s points at text %s of %d shared texts", attr(e, "r"), value, len(b.strings))
-		}
-		c.kind, c.text = text, b.strings[n]
-	case kindWord == "inlineStr":
-		c.kind, c.text = text, tidy(inline)
-	case kindWord == "str":
-		c.kind, c.text = text, tidy(unescape(value))
-		if c.formula && !hasV { // <v></v> is the stored result "", a missing <v> is none
-			c.kind = noStored
-			return c, nil
-		}
-	case !hasValue:
-		if c.formula {
-			c.kind = noStored
-			return c, nil
-		}
-	case kindWord == "b":
-		c.kind, c.text = truth, map[bool]string{true: "TRUE", false: "FALSE"}[value == "1" || value == "true"]
-	case kindWord == "e":
-		c.kind, c.text = broken, value
-	case kindWord == "d":
-		c.kind, c.text = text, tidy(value)
-	default:
-		c.kind, c.text = figure, strings.TrimSpace(value)
-		if s := attr(e, "s"); s != "" {
-			if n, err := strconv.Atoi(s); err == nil && n >= 0 && n < len(b.forms) {
-				c.form = b.forms[n]
-			}
-		}
-	}
-	if c.kind == text && brokenWords[c.text] {
-		c.kind = broken
-	}
-	if len(c.text) > 4*mostText {
+	case err != nil:
+		return c, fmt.Errorf("the cell %s %w", attr(e, "r"), err)
+	case len(c.text) > 4*mostText:
 		return c, fmt.Errorf("the cell %s holds more than %d characters", attr(e, "r"), mostText)
 	}
-	if c.text == "" {
-		c.kind = blank
-		if c.formula {
-			c.formula = false
+	return c, nil
+}
+
+// meaning makes an entry of what a cell holds; style is the number of its cell style.
+func (b *book) meaning(in stored, style string) (entry, error) {
+	c := entry{formula: in.formula}
+	switch {
+	case in.kind == "s" && in.value != "":
+		n, err := strconv.Atoi(strings.TrimSpace(in.value))
+		if err != nil || n < 0 || n >= len(b.strings) {
+			return c, fmt.Errorf("points at text %s of %d shared texts", in.value, len(b.strings))
 		}
+		c.kind, c.text = text, b.strings[n]
+	case in.kind == "inlineStr":
+		c.kind, c.text = text, tidy(in.inline)
+	case in.formula && (!in.hasV || in.value == "" && in.kind != "str"): // of text, <v></v> is the stored result "", a missing <v> is none
+		c.kind = noStored
+		return c, nil
+	case in.value == "":
+	case in.kind == "str":
+		c.kind, c.text = text, tidy(unescape(in.value))
+	case in.kind == "b":
+		c.kind, c.text = truth, map[bool]string{true: "TRUE", false: "FALSE"}[in.value == "1" || in.value == "true"]
+	case in.kind == "e":
+		c.kind, c.text = broken, in.value
+	case in.kind == "d":
+		c.kind, c.text = text, tidy(in.value)
+	default:
+		c.kind, c.text = figure, strings.TrimSpace(in.value)
+		if n, err := strconv.Atoi(style); err == nil && n >= 0 && n < len(b.forms) {
+			c.form = b.forms[n]
+		}
+	}
+	switch {
+	case c.text == "":
+		return entry{}, nil
+	case c.kind == text && brokenWords[c.text]:
+		c.kind = broken
 	}
 	return c, nil
 }

@@ -1,0 +1,154 @@
+package workbook
+
+import (
+	"strconv"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+)
+
+// face is a row of Faces.
+type face struct {
+	model.FaceExposure
+	line   *line
+	course *course
+}
+
+// readFaces reads the sheet Faces and hangs its rows on their steps.
+func (r *reader) readFaces() {
+	t := r.tables["Faces"]
+	if t == nil {
+		return
+	}
+	for _, l := range t.lines {
+		procName, prodName, stepName := l.words("Process"), l.words("Product"), l.words("Step")
+		f := &face{line: l}
+		if w := l.choice("Face"); w != "" {
+			for _, m := range model.Faces {
+				if m.Name == w {
+					f.Face = m
+				}
+			}
+		}
+		pr := r.processes[key(procName)]
+		if pr == nil {
+			f.course = r.exposure(l, &f.Exposure, 0)
+			if procName != "" && len(r.unread["Steps"]) == 0 {
+				l.fault("Process", procName, processUnknown, r.offer(procName, r.processNames))
+			}
+			continue
+		}
+		s := pr.by[key(stepName)]
+		if s == nil {
+			f.course = r.exposure(l, &f.Exposure, 0)
+			if stepName != "" {
+				l.fault("Step", stepName, stepUnknown, pr.name, r.offer(stepName, pr.stepNames))
+			}
+			r.concern(pr, prodName, l.because)
+			continue
+		}
+		p := r.byName[key(prodName)]
+		duration := s.DurationS
+		if p != nil && p.own[key(stepName)] != nil {
+			duration = p.own[key(stepName)].DurationS
+		}
+		f.course = r.exposure(l, &f.Exposure, duration)
+		r.hang(l, pr, s, f, prodName)
+	}
+}
+
+// hang puts a face on its step, for all products of the process or for one.
+func (r *reader) hang(l *line, pr *process, s *step, f *face, prodName string) {
+	if prodName == "" {
+		if !f.twice(s.faces) && f.Face != nil {
+			s.faces = append(s.faces, f)
+		} else {
+			s.line.suffer(l.because)
+		}
+		return
+	}
+	p := r.byName[key(prodName)]
+	switch {
+	case p == nil:
+		l.fault("Product", prodName, productUnknown, r.offer(prodName, r.productNames))
+		return
+	case key(p.Process) != key(pr.name):
+		l.fault("Product", prodName, otherProcess, strconv.Quote(p.Process))
+	}
+	if p.faces == nil {
+		p.faces = map[string][]*face{}
+	}
+	if !f.twice(p.faces[key(s.Name)]) && f.Face != nil {
+		p.faces[key(s.Name)] = append(p.faces[key(s.Name)], f)
+	}
+	p.suffer(l.because)
+}
+
+// twice tells of a face that a step has a row for already.
+func (f *face) twice(others []*face) bool {
+	for _, o := range others {
+		if f.Face != nil && o.Face == f.Face {
+			f.line.fault("Face", f.Face.Name, faceTwice, strconv.Itoa(o.At.Row))
+			return true
+		}
+	}
+	return false
+}
+
+// concern refuses the products of a process, or the one that is named, for faults of a row.
+func (r *reader) concern(pr *process, prodName string, es cell.Errors) {
+	if p := r.byName[key(prodName)]; p != nil {
+		p.suffer(es)
+		return
+	}
+	for _, p := range r.users[key(pr.name)] {
+		p.suffer(es)
+	}
+}
+
+// facesOf joins the faces of a step: rows that name the product replace the others.
+func (p *product) facesOf(s *step, parts [][]cell.Reading) ([]model.FaceExposure, [][]cell.Reading) {
+	var out []model.FaceExposure
+	use := func(f *face) {
+		out = append(out, f.FaceExposure)
+		parts = append(parts, f.line.readings)
+		if f.course != nil {
+			parts = append(parts, f.course.readings)
+		}
+	}
+	own := p.faces[key(s.Name)]
+	for _, f := range s.faces {
+		replaced := false
+		for _, o := range own {
+			replaced = replaced || o.Face == f.Face
+		}
+		if !replaced && f.Face != nil {
+			use(f)
+		}
+	}
+	for _, f := range own {
+		if f.Face != nil {
+			use(f)
+		}
+	}
+	return out, parts
+}
+
+// faceFits holds a face against the product's shape.
+func (p *product) faceFits(f *face) {
+	if p.Shape == nil || f.Face == nil {
+		return
+	}
+	for _, g := range p.Shape.Faces {
+		if g == f.Face {
+			return
+		}
+	}
+	if len(p.Shape.Faces) == 0 {
+		f.line.fault("Face", f.Face.Name, faceNone, p.Shape.Name)
+	} else {
+		f.line.fault("Face", f.Face.Name, faceWrong, p.Shape.Name, and(names(p.Shape.Faces, func(f *model.Face) string { return f.Name })))
+	}
+	p.because.Add(f.line.because[len(f.line.because)-1])
+	f.line.because = f.line.because[:len(f.line.because)-1] // other products of the process have other shapes
+}
