@@ -170,10 +170,27 @@ func (v *view) edges(from model.Place, q question, surfaceOnly bool) []model.Pla
 					out = mid
 				}
 			}
-			found = append(found, in)
+			found = append(found, v.inside(q, in, from))
 		}
 	}
 	return found
+}
+
+// probeM is how near to an edge two places cannot be told apart: no probe is thinner, m (common practice, no source).
+const probeM = 4e-4
+
+// inside is the place a probe's breadth from an edge towards another place; the edge itself where the verdict differs there.
+func (v *view) inside(q question, edge, to model.Place) model.Place {
+	d := math.Hypot(math.Hypot(to.UpM-edge.UpM, to.AcrossM-edge.AcrossM), to.AlongM-edge.AlongM)
+	w := math.Min(1, probeM/math.Max(d, 1e-9))
+	p := model.Place{UpM: edge.UpM + w*(to.UpM-edge.UpM), AcrossM: edge.AcrossM + w*(to.AcrossM-edge.AcrossM), AlongM: edge.AlongM + w*(to.AlongM-edge.AlongM)}
+	for _, errK := range []float64{0, v.errK} {
+		t := tilt{errK: errK, rank: true}
+		if q.measure(v.c.path(p), t).verdict != q.measure(v.c.path(edge), t).verdict {
+			return edge
+		}
+	}
+	return p
 }
 
 // clocked tells whether the limit's clock starts at a crossing, so that it may not apply to some places.
