@@ -482,7 +482,7 @@ func groupsOf(gs []rules.GroupFinding) []groupJSON {
 func cautionsOf(cs []Caution) []cautionJSON {
 	out := make([]cautionJSON, 0, len(cs))
 	for _, c := range cs {
-		out = append(out, cautionJSON{c.Key, c.Text})
+		out = append(out, cautionJSON(c))
 	}
 	return out
 }

@@ -82,7 +82,7 @@ var textWords = map[string]string{
 	"factor":        "%s: %s",
 	"factor from":   " (from: %s)",
 	"method":        "Method: %s.",
-	"error":         "Error estimate: %s at any place, from a minute after each change of surroundings.",
+	"error":         "Error estimate: %s at any place, from half a minute after each change of surroundings.",
 	"interval":      "Courses are written every %s and at each change of step; limits are judged from the field itself, not from this interval.",
 	"bound":         "From %s on the temperatures are bounds: %s",
 	"cautions":      "Cautions for this run",

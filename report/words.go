@@ -222,7 +222,7 @@ var words = map[string]string{
 	"predicted title":  "Predicted (calculated from the inputs)",
 	"predicted note":   "Everything in this part is calculated. Nothing in it was measured.",
 	"course title":     "Temperature and time",
-	"error sentence":   "The error estimate of the calculation is at most %s from a minute after each change; it is too small to be drawn where it is below the width of the line.",
+	"error sentence":   "The error estimate of the calculation is at most %s from half a minute after each change; it is too small to be drawn where it is below the width of the line.",
 	"slowest title":    "Where the slowest point is, and how it moves",
 	"moves stirred":    "The content is mixed throughout: all places have the same temperature.",
 	"moves sentence":   "%s. The place that decides the tightest limit: %s.",
