@@ -137,10 +137,8 @@ func (b *base) values(x float64, phi, dphi []float64) {
 		return
 	case radial:
 		legendre(2*x*x-1, 1, 0, phi, dphi)
-		if dphi != nil {
-			for j := range dphi {
-				dphi[j] *= 4 * x
-			}
+		for j := range dphi {
+			dphi[j] *= 4 * x
 		}
 	}
 	s := norms[b.kind][:n]

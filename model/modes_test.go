@@ -280,10 +280,10 @@ func TestLongTimeNusselt(t *testing.T) {
 		if printed := strconv.FormatFloat(nu, 'f', 2, 64); printed != r["printed"] {
 			t.Errorf("%s: printed %s, want %s", r["geometry"], printed, r["printed"])
 		}
-		nu, oneTerm := local(0.1)
+		nu, _ = local(0.1)
 		closeTo(t, r["geometry"]+" local excess at Fo 0.1", nu/want-1, number(t, r["local_excess"]), 0.06*number(t, r["local_excess"])+3e-7)
 		for col, fo := range map[string]float64{"one_term_010": 0.1, "one_term_002": 0.02, "one_term_003": 0.03, "one_term_005": 0.05} {
-			_, oneTerm = local(fo)
+			_, oneTerm := local(fo)
 			want := number(t, r[col])
 			closeTo(t, r["geometry"]+" "+col, oneTerm, want, 0.06*math.Abs(want))
 		}

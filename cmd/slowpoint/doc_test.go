@@ -410,7 +410,7 @@ func TestReadmeResults(t *testing.T) {
 	}
 	text, _, _ = strings.Cut(text, "\n\n")
 	told := map[string]bool{}
-	for _, m := range regexp.MustCompile("(?m)^\\| ([^|]*) \\|").FindAllStringSubmatch(text, -1) {
+	for _, m := range regexp.MustCompile(`(?m)^\| ([^|]*) \|`).FindAllStringSubmatch(text, -1) {
 		for _, k := range regexp.MustCompile("`([^`]*)`").FindAllStringSubmatch(m[1], -1) {
 			told[k[1]] = true
 		}

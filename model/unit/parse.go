@@ -236,11 +236,9 @@ func pointed(s string, d Decimal) (string, *Mistake) {
 		name := map[Decimal]string{Point: "point", Comma: "comma"}
 		return "", &Mistake{"has a decimal " + name[kind] + ", and the decimal sign of this plan is the " + name[d], "type it with a decimal " + name[d]}
 	}
-	out := strings.NewReplacer(" ", "", "'", "")
+	out := strings.NewReplacer(" ", "", "'", "", ",", "")
 	if kind == Comma {
 		out = strings.NewReplacer(" ", "", "'", "", ".", "", ",", ".")
-	} else {
-		out = strings.NewReplacer(" ", "", "'", "", ",", "")
 	}
 	return out.Replace(s), nil
 }

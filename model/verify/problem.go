@@ -83,7 +83,6 @@ func mean(s *model.Samples, i int) float64      { return s.Mean[i] }
 func coldest(s *model.Samples, i int) float64   { return s.Coldest[i] }
 func hottest(s *model.Samples, i int) float64   { return s.Hottest[i] }
 func coldestUp(s *model.Samples, i int) float64 { return 1000 * s.ColdestAt[i].UpM }
-func hottestUp(s *model.Samples, i int) float64 { return 1000 * s.HottestAt[i].UpM }
 
 // passes asks when, in s, a place passes a temperature for good: it is on the other side of it at the end of the chain and stays there.
 func (p Problem) passes(place model.Place, c float64) func() (float64, error) {

@@ -33,7 +33,6 @@ type recipe struct {
 	whole             *string
 	onlyXlsx, onlyCSV bool
 	head, want        string // of the case: everything up to expect, and what follows
-	truncate          float64
 }
 
 type page struct {

@@ -12,7 +12,6 @@ type course struct {
 	model.Course
 	because  cell.Errors
 	readings []cell.Reading
-	humid    int // rows with a relative humidity
 	first    *line
 }
 

@@ -7,7 +7,6 @@ import (
 	"fmt"
 	"io"
 	"os"
-	"sort"
 	"strings"
 	"unicode/utf8"
 )
@@ -167,10 +166,4 @@ func sheetOf(name string) *Sheet {
 		}
 	}
 	return nil
-}
-
-func sheetNames() []string {
-	out := names(Sheets, func(s *Sheet) string { return s.Name })
-	sort.Strings(out)
-	return out
 }
