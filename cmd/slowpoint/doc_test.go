@@ -236,7 +236,7 @@ func ruleTable() string {
 func refusedList() string {
 	var b strings.Builder
 	for _, r := range model.Refusals {
-		fmt.Fprintf(&b, "- %s: %s. Instead: %s.\n", r.Words, r.Why, r.Instead)
+		fmt.Fprintf(&b, "- %s: %s. Instead: %s.\n", r.Words, r.Why, strings.TrimSuffix(r.Instead, " instead"))
 	}
 	for _, s := range model.Shapes {
 		if s.Refused != "" {
