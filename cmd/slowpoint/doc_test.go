@@ -80,6 +80,19 @@ func TestReadmeTables(t *testing.T) {
 	}
 }
 
+// TestReadmeColumns wants a word about every column: in the table, or below the tables.
+func TestReadmeColumns(t *testing.T) {
+	_, text, _ := strings.Cut(project(t, "README.md"), "Columns that the tables leave without a word:")
+	text, _, _ = strings.Cut(text, "### Shapes")
+	for _, s := range workbook.Sheets {
+		for _, c := range s.Columns {
+			if c.Help == "" && s.Refused == "" && !strings.Contains(text, "*"+c.Heading+"*") {
+				t.Errorf("README.md says nothing about the column %s of %s", c.Heading, s.Name)
+			}
+		}
+	}
+}
+
 // table makes a Markdown table.
 func table(head string, rows [][]string) string {
 	var b strings.Builder
@@ -176,7 +189,7 @@ func accepts(s *workbook.Sheet, c *workbook.Column) string {
 	}
 	words := map[workbook.Least]string{workbook.Any: "a number", workbook.NotNegative: "a number, 0 or more", workbook.Positive: "a number above 0",
 		workbook.Share: "0 to 100 %", workbook.UpToOne: "a number above 0, at most 1"}
-	if c.Quantity.Plain() {
+	if c.Quantity.Plain() || c.Least == workbook.Share {
 		return words[c.Least]
 	}
 	return words[c.Least] + ", in " + c.Quantity.Listing()
