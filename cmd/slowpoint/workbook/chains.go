@@ -8,11 +8,11 @@ import (
 // chains puts the steps of every product together and asks the model what it cannot calculate.
 func (r *reader) chains() {
 	if r.height == nil {
-		at := cell.Ref{Sheet: "Plan"}
+		sheet := "Plan"
 		if g := r.grids["Plan"]; g != nil {
-			at.Sheet = g.name
+			sheet = g.name
 		}
-		r.height = []cell.Reading{{At: at, Column: "Altitude", Used: "0 m", Why: "blank: the height of the sea is taken"}}
+		r.height = []echoes{{sheet: sheet, list: []echo{{column: &Column{Heading: "Altitude"}, used: "0 m", text: "blank: the height of the sea is taken", blank: true}}}}
 	}
 	for _, p := range r.products {
 		if p.Process == "" {
@@ -56,7 +56,7 @@ func (r *reader) chain(p *product, pr *process) {
 		p.Steps = pr.whole
 	} else {
 		p.Steps = make([]model.Step, 0, len(pr.steps))
-		var parts [][]cell.Reading
+		var parts [][]echoes
 		for _, s := range pr.steps {
 			use := s
 			if o := p.own[key(s.Name)]; o != nil {
@@ -81,8 +81,8 @@ func (r *reader) chain(p *product, pr *process) {
 }
 
 // before are the readings of the product's own row, of the height above the sea, and of its food.
-func (p *product) before(height []cell.Reading) [][]cell.Reading {
-	out := [][]cell.Reading{p.line.readings, height}
+func (p *product) before(height []echoes) [][]echoes {
+	out := [][]echoes{p.line.readings, height}
 	if p.food != nil && len(p.food.readings) > 0 {
 		out = append(out, p.food.readings)
 	}

@@ -11,7 +11,7 @@ import (
 type course struct {
 	model.Course
 	because  cell.Errors
-	readings []cell.Reading
+	readings []echoes
 	first    *line
 }
 

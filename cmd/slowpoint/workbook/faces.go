@@ -107,7 +107,7 @@ func (r *reader) concern(pr *process, prodName string, es cell.Errors) {
 }
 
 // facesOf joins the faces of a step: rows that name the product replace the others.
-func (p *product) facesOf(s *step, parts [][]cell.Reading) ([]model.FaceExposure, [][]cell.Reading) {
+func (p *product) facesOf(s *step, parts [][]echoes) ([]model.FaceExposure, [][]echoes) {
 	var out []model.FaceExposure
 	use := func(f *face) {
 		out = append(out, f.FaceExposure)

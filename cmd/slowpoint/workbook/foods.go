@@ -16,7 +16,7 @@ type food struct {
 	name     string
 	material *model.Material
 	because  cell.Errors
-	readings []cell.Reading
+	readings []echoes
 	lines    []*foodLine
 }
 

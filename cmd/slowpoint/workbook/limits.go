@@ -29,7 +29,7 @@ type scope struct {
 	stages   map[*model.Stage]bool // of any of them
 	faulty   bool                  // one of them has faults
 	points   map[string]*pointName // of any of them, by key
-	readings []cell.Reading        // of the limits for them, and of their tables and groups
+	readings []echoes              // of the limits for them, and of their tables and groups
 	given    map[string]bool       // tables and groups whose readings are there already
 }
 
@@ -66,7 +66,7 @@ func (ls *limits) scope(name string, products []*product) *scope {
 type timeTable struct {
 	rules.Table
 	because  cell.Errors
-	readings []cell.Reading
+	readings []echoes
 	hidden   bool // one of its rows
 }
 
@@ -255,7 +255,7 @@ func (ls *limits) read(l *line) {
 }
 
 // give adds readings to those of a scope; those of a table or group (which have a name) once.
-func (sc *scope) give(name string, readings []cell.Reading) {
+func (sc *scope) give(name string, readings []echoes) {
 	if name != "" && sc.given[name] {
 		return
 	}

@@ -18,7 +18,7 @@ type Product struct {
 	model.Product
 	Steps                                       []model.Step // shared by the products of a process; do not change it
 	Family, RecipeVersion, Batch, Process, Note string
-	readings                                    [][]cell.Reading // each part is shared by all products that use it
+	readings                                    [][]echoes // each part is shared by all products that use it
 }
 
 // Readings is everything typed or defaulted that the product uses: its own row, its food, points, steps, faces, courses, then the
@@ -26,13 +26,42 @@ type Product struct {
 func (p *Product) Readings() []cell.Reading {
 	n := 0
 	for _, part := range p.readings {
-		n += len(part)
+		for i := range part {
+			n += len(part[i].list)
+		}
 	}
 	out := make([]cell.Reading, 0, n)
 	for _, part := range p.readings {
-		out = append(out, part...)
+		for i := range part {
+			row := &part[i]
+			for _, e := range row.list {
+				r := cell.Reading{At: cell.Ref{Sheet: row.sheet, Row: row.row, Col: int(e.col)}, Column: e.column.Heading, Used: e.used}
+				if e.blank {
+					r.Why = e.text
+				} else {
+					r.Typed = e.text
+				}
+				out = append(out, r)
+			}
+		}
 	}
 	return out
+}
+
+// echoes are the values of one row as they were taken, in half the space of cell.Reading: a large plan has a million of them.
+type echoes struct {
+	sheet string
+	row   int
+	list  []echo
+}
+
+// echo is one of them.
+type echo struct {
+	column *Column
+	col    int32
+	blank  bool   // a default stood in, and text says why
+	text   string // as typed
+	used   string
 }
 
 // NotCalculated is a product that the plan names and that cannot be calculated.

@@ -70,7 +70,7 @@ type reader struct {
 	offers   int // of names for misspelt ones
 	problems cell.Errors
 
-	height    []cell.Reading // of the item Altitude
+	height    []echoes // of the item Altitude
 	foods     map[string]*food
 	courses   map[string]*course
 	processes map[string]*process

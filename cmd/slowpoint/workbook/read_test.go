@@ -107,7 +107,7 @@ func TestManyProducts(t *testing.T) {
 	}
 	kept := float64(after.HeapAlloc-before.HeapAlloc) / (1 << 20)
 	t.Logf("%.0f MB kept, %.0f MB of memory in all", kept, float64(after.Sys)/(1<<20))
-	if kept > 120 {
+	if kept > 80 {
 		t.Errorf("%.0f MB kept", kept)
 	}
 	runtime.KeepAlive(p)

@@ -5,7 +5,6 @@ import (
 	"strings"
 
 	"slowpoint/model"
-	"slowpoint/model/cell"
 )
 
 // process is the chain of steps that products share.
@@ -15,7 +14,7 @@ type process struct {
 	by    map[string]*step
 	used  bool
 	whole []model.Step // of a product without rows of its own; made once
-	parts [][]cell.Reading
+	parts [][]echoes
 }
 
 // step is a row of Steps.
@@ -79,6 +78,9 @@ func (r *reader) readSteps() {
 	}
 	for _, p := range r.products {
 		p.suffer(r.unread["Steps"])
+	}
+	for _, l := range t.lines {
+		l.row.cells = nil // everything has been read; this is most of a large plan
 	}
 }
 

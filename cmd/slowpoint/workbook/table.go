@@ -35,7 +35,7 @@ type line struct {
 	t        *table
 	row      *gridRow
 	because  cell.Errors // the faults that it has, or that it suffers from
-	readings []cell.Reading
+	readings []echoes
 	merged   []block // merged cells that the row has a part of
 }
 
@@ -437,9 +437,13 @@ func (l *line) remark(level cell.Level, heading, typed string, s saying, args ..
 // note keeps a value for the input echo.
 func (l *line) note(heading, typed, used, why string) {
 	if l.readings == nil {
-		l.readings = make([]cell.Reading, 0, len(l.row.cells)+2) // and about two defaults
+		l.readings = []echoes{{sheet: l.t.grid.name, row: l.row.n, list: make([]echo, 0, len(l.row.cells)+2)}} // and about two defaults
 	}
-	l.readings = append(l.readings, cell.Reading{At: l.at(heading), Column: heading, Typed: typed, Used: used, Why: why})
+	e := echo{column: l.t.sheet.Column(heading), col: int32(l.at(heading).Col), text: typed, used: used}
+	if why != "" {
+		e.text, e.blank = why, true
+	}
+	l.readings[0].list = append(l.readings[0].list, e)
 }
 
 // broken tells of a cell that holds no value at all.
