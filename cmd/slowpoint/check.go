@@ -86,8 +86,7 @@ func readPlan(args []string, o *checkOptions) (plan *workbook.Plan, folder strin
 		folder = "slowpoint-demo-results"
 	} else {
 		plan, err = workbook.Read(args[0])
-		path := filepath.Clean(args[0])
-		folder = strings.TrimSuffix(path, filepath.Ext(path)) + "-results"
+		folder = beside(args[0])
 	}
 	if err != nil {
 		return nil, "", &failure{exitInput, err}
@@ -96,6 +95,20 @@ func readPlan(args []string, o *checkOptions) (plan *workbook.Plan, folder strin
 		folder = o.out
 	}
 	return plan, folder, nil
+}
+
+// beside is the folder of the results when none is named: beside the plan, with its name.
+func beside(plan string) string {
+	path := filepath.Clean(plan)
+	if base := filepath.Base(path); base == "." || base == ".." {
+		if whole, err := filepath.Abs(path); err == nil {
+			path = whole
+		}
+	}
+	if ext := filepath.Ext(path); strings.EqualFold(ext, ".xlsx") || strings.EqualFold(ext, ".xlsm") {
+		path = strings.TrimSuffix(path, ext)
+	}
+	return path + "-results"
 }
 
 // headOf makes what all documents share.

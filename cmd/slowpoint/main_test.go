@@ -332,6 +332,20 @@ func TestFileNames(t *testing.T) {
 	}
 }
 
+func TestBeside(t *testing.T) {
+	here := filepath.Join(t.TempDir(), "summer menu")
+	if err := os.MkdirAll(filepath.Join(here, "trays"), 0o755); err != nil {
+		t.Fatal(err)
+	}
+	t.Chdir(here)
+	for plan, want := range map[string]string{"plan.xlsx": "plan-results", "plan.XLSM": "plan-results", "trays": "trays-results", "trays/": "trays-results",
+		"menu.v2": "menu.v2-results", "../x/plan.xlsx": "../x/plan-results", ".": here + "-results", "trays/..": here + "-results"} {
+		if got := beside(plan); got != filepath.FromSlash(want) {
+			t.Errorf("%s: %s, want %s", plan, got, want)
+		}
+	}
+}
+
 func TestWriteWhole(t *testing.T) {
 	path := filepath.Join(t.TempDir(), "kept")
 	write := func(text string, err error) error {
