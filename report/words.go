@@ -126,7 +126,7 @@ var words = map[string]string{
 	"caution dates set by hand":                         "The order of day and month was set by hand in the plan (%s). A wrong order moves records and clocks.",
 	"caution slow come-up lethality":                    "More than a tenth of the credited equivalent time was earned at low temperature or on a slow way up, where such a sum credits too much.",
 	"caution lethality without floor":                   "Equivalent time is credited at every temperature: the limit names no lowest temperature from which to count.",
-	"caution sparse record":                              "The readings are further apart than the time that a limit needs. A shorter interval is needed to show it.",
+	"caution sparse record":                             "The readings are further apart than the time that a limit needs. A shorter interval is needed to show it.",
 	"caution below 60 °C table row":                     "The deciding row of the table lies below 60 °C. Check that the code allows it for this food.",
 	// the page for whoever cooks and probes
 	"operator title":        "For the kitchen and the line",
