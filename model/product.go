@@ -42,6 +42,22 @@ func separates(axes [3]*axis, chain []*chainStep) bool {
 	return true
 }
 
+// fadedK is the size below which a term of an earlier step is left out, K: chains of hundreds of steps would drag all of them along.
+const fadedK = 1e-10
+
+// sizeK is the root mean square of a term over the food, K.
+func (t *productTerm) sizeK() float64 {
+	size := math.Abs(t.weight)
+	for _, x := range t.x {
+		sum := 0.0
+		for _, v := range x {
+			sum += v * v
+		}
+		size *= math.Sqrt(sum)
+	}
+	return size
+}
+
 func newProduct(axes [3]*axis, nd *nodes, startC float64) *product {
 	f := &product{axes: axes, nodes: nd, start: startC}
 	f.now.f = f
@@ -80,10 +96,14 @@ func (f *product) run(cs *chainStep) {
 					}
 				}
 			}
-			st.terms = append(st.terms, t)
+			if t.sizeK() > fadedK {
+				st.terms = append(st.terms, t)
+			}
 		}
 	}
-	st.terms = append(st.terms, productTerm{weight: before - st.mediumC, x: st.e0})
+	if before != st.mediumC {
+		st.terms = append(st.terms, productTerm{weight: before - st.mediumC, x: st.e0})
+	}
 	f.steps = append(f.steps, st)
 }
 
