@@ -155,6 +155,9 @@ func (q *Quantity) noUnit(word string) *Mistake {
 	if q.Plain() {
 		return &Mistake{"is not a plain number", "type the number alone"}
 	}
+	if q.Unit(strings.Trim(word, " 0123456789.,-/")) != nil || strings.Trim(word, " 0123456789.,-/") == "" {
+		return &Mistake{"is not a single number", "type one number" + strings.TrimPrefix(q.example(), ", or a number")}
+	}
 	return &Mistake{"is not a number with a unit of " + q.Name + ": " + strconv.Quote(word) + " is none", "units of " + q.Name + " are " + q.Listing()}
 }
 

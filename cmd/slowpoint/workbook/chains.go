@@ -20,7 +20,10 @@ func (r *reader) chains() {
 		}
 		pr := r.processes[key(p.Process)]
 		if pr == nil || len(pr.steps) == 0 {
-			if len(r.unread["Steps"]) == 0 {
+			if pr != nil && len(p.own) > 0 {
+				p.line.fault("Process", p.Process, onlyOwnRows)
+				p.suffer(p.line.because)
+			} else if len(r.unread["Steps"]) == 0 {
 				p.line.fault("Process", p.Process, processUnknown, r.offer(p.Process, r.processNames))
 				p.suffer(p.line.because)
 			}

@@ -12,7 +12,6 @@ type course struct {
 	model.Course
 	because  cell.Errors
 	readings []echoes
-	first    *line
 }
 
 // readCourses reads the sheet Courses; rows of one name make one course.
@@ -30,7 +29,7 @@ func (r *reader) readCourses() {
 		}
 		c := r.courses[key(name)]
 		if c == nil {
-			c = &course{Course: model.Course{Name: name}, first: l}
+			c = &course{Course: model.Course{Name: name}}
 			r.courses[key(name)] = c
 			if at != nil && *at != 0 {
 				l.fault("Time", l.entry("Time").text, courseStart, name)

@@ -15,6 +15,7 @@ import (
 const (
 	mostRows    = 100_000   // filled rows of a sheet
 	mostColumns = 512       // columns of a sheet
+	mostFile    = 64 << 20  // of a workbook file
 	mostBytes   = 256 << 20 // of a plan, unzipped
 	mostCells   = 3_000_000 // of a plan
 	mostText    = 32_767    // characters of a cell, as in spreadsheets

@@ -71,6 +71,7 @@ var (
 	foodForLayers   = saying{"is a food, but a layered slab takes its foods from the sheet Layers", "clear the cell or change the shape"}
 	foodUnknown     = saying{"is neither a food of the sheet Foods nor a built-in one{1}", "slowpoint foods lists the built-in foods"}
 	processUnknown  = saying{"has no rows in the sheet Steps{1}", "add its steps, or correct the name"}
+	onlyOwnRows     = saying{"has only rows in the sheet Steps that name a product", "leave the column Product blank in the rows of the process; a row that names a product replaces one of them for it"}
 	processUnused   = saying{"is a process that no product uses{1}", "correct the name, or take the row out"}
 	productUnknown  = saying{"is not a product of the sheet Products{1}", "correct the name"}
 	foodMixed       = saying{"is a measured property, but the row gives a composition too", "keep the parts of the composition, or Conductivity, Density and Specific heat"}

@@ -37,8 +37,8 @@ func Read(name string) (*Plan, error) {
 			return nil, err
 		}
 	} else {
-		if info.Size() > mostBytes {
-			return nil, fmt.Errorf("%s: the file is larger than %d MB, too large for a plan", name, mostBytes>>20)
+		if info.Size() > mostFile {
+			return nil, fmt.Errorf("%s: the file is larger than %d MB, too large for a plan; take out pictures and sheets that do not belong to it, or divide it into several", name, mostFile>>20)
 		}
 		data, err := os.ReadFile(name)
 		if err != nil {

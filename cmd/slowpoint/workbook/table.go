@@ -130,6 +130,9 @@ func (r *reader) open(g *grid, s *Sheet) *table {
 		r.plan.Columns[g.name] = map[string]int{}
 	}
 	for name, h := range t.place {
+		if h.column == nil {
+			continue
+		}
 		r.plan.Columns[g.name][name] = h.col
 	}
 	if whole {
