@@ -30,7 +30,7 @@ var examples = []struct {
 }{
 	{"trays", []string{"--every", "600s"}, exitNotMet, nil},
 	{"roast", []string{"--every", "600s"}, exitNotMet, nil},
-	{"eggs-and-dumplings", []string{"--every", "300s"}, exitNotMet, nil},
+	{"eggs-and-dumplings", []string{"--every", "600s"}, exitNotMet, nil},
 	{"letter-and-inches", []string{"--every", "600s"}, exitMet, nil},
 	{"sixty-products", []string{"--every", "3600s"}, exitInput, []string{"summary.pdf", "report.txt", "results.json"}},
 }
