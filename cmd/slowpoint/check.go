@@ -18,6 +18,7 @@ import (
 	"golang.org/x/term"
 
 	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model/cell"
 	"slowpoint/report"
 	"slowpoint/rules"
 )
@@ -340,7 +341,7 @@ func (r *runner) one(i int, reports bool) (d *done) {
 func (r *runner) tell(w io.Writer) {
 	const indent = "               "
 	for _, n := range r.head.NotCalculated[:min(len(r.head.NotCalculated), most)] {
-		fmt.Fprintf(w, "%-14s %s\n%ssee the errors above\n", "NOT CALCULATED", n.Product, indent)
+		fmt.Fprintf(w, "%-14s %s\n%serror at %s\n", "NOT CALCULATED", n.Product, indent, faultCells(n.Because))
 	}
 	order := make([]int, len(r.rows))
 	for i := range order {
@@ -368,6 +369,20 @@ func (r *runner) tell(w io.Writer) {
 		fmt.Fprintf(w, "… at most %d of a kind are shown here; all of them are in report.txt\n", most)
 	}
 	fmt.Fprintf(w, "\n%s\nCalculated from the inputs, not measured; your food authority decides.\nResults in %s\n", r.counts(), r.folder)
+}
+
+// faultCells lists the cells of the first errors; what they are is told on standard error.
+func faultCells(es cell.Errors) string {
+	var cells []string
+	for _, e := range es {
+		if e.Level == cell.Fault && !slices.Contains(cells, e.At.String()) {
+			cells = append(cells, e.At.String())
+		}
+	}
+	if len(cells) > 3 {
+		return fmt.Sprintf("%s and %d more", strings.Join(cells[:3], ", "), len(cells)-3)
+	}
+	return strings.Join(cells, ", ")
 }
 
 // counts says how many products have which verdict.
