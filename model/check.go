@@ -83,7 +83,7 @@ func (c *checker) add(at cell.Ref, field, typed, msg, hint string) {
 func (c *checker) shape() {
 	p := c.product
 	if p.Shape.Refused != "" {
-		c.add(p.At, "Shape", p.Shape.Name, p.Shape.Refused+", so this product is not calculated",
+		c.add(p.At, "Shape", p.Shape.Name, p.Shape.Refused,
 			"use the nearest shape on the slow side: the thickest part as a slab or cylinder, with the fewest cooled faces")
 	}
 	size := map[string]float64{"Thickness": p.Size.ThicknessM, "Width": p.Size.WidthM, "Length": p.Size.LengthM,
@@ -104,6 +104,16 @@ func (c *checker) food() {
 		}
 		return
 	}
+	at, field := f.At, "Flows"
+	if at.IsZero() { // a built-in food has no row of its own
+		at, field = p.At, "Food"
+	}
+	typed := func(flow *Flow) string {
+		if field == "Food" {
+			return f.Name
+		}
+		return flow.Name
+	}
 	if f.Table {
 		c.add(f.At, "At temperature", "", fmt.Sprintf("%s has properties at several temperatures, which cannot be calculated yet", f.Name),
 			"keep one row, at the middle of the temperatures that matter, on the slow side")
@@ -113,10 +123,10 @@ func (c *checker) food() {
 	}
 	switch f.Flow {
 	case FlowsYes:
-		c.add(f.At, "Flows", f.Flow.Name, fmt.Sprintf("%s mixes by itself when left still; conduction does not describe that", f.Name),
+		c.add(at, field, typed(f.Flow), fmt.Sprintf("%s mixes by itself when left still; conduction does not describe that", f.Name),
 			"use the shape stirred if it is stirred all the time, or judge a probe record")
 	case FlowsThick:
-		c.add(f.At, "Flows", f.Flow.Name, fmt.Sprintf("%s may mix by itself while it is hot; conduction alone does not describe that", f.Name),
+		c.add(at, field, typed(f.Flow), fmt.Sprintf("%s may mix by itself while it is hot; conduction alone does not describe that", f.Name),
 			"use the shape stirred if it is stirred all the time, or judge a probe record")
 	}
 	if f.FreezingC != nil && p.StartC < *f.FreezingC || f.FreezingC == nil && p.StartC < unfrozenC {

@@ -10,11 +10,14 @@ import (
 	"slowpoint/rules"
 )
 
-// leverPlans is the largest plan for which a smaller size is looked for where a limit is not met: it costs about eight runs a product.
+// leverPlans is the largest plan for which a smaller size is looked for where a limit is not met: it costs about a dozen runs a product.
 const leverPlans = 100
 
-// leverLeast is the smallest share of the size that is tried.
-const leverLeast = 0.3
+// leverLeast is the smallest share of the size that is tried, in leverSteps steps that grow.
+const (
+	leverLeast = 0.3
+	leverSteps = 8
+)
 
 // lever says, for a product with a limit that is not met, which smaller size would meet every limit in the model; "" if that was
 // not looked for. Sizes are whole millimetres, rounded down.
@@ -35,21 +38,31 @@ func (r *runner) lever(p *workbook.Product, verdict rules.Verdict) string {
 		d, err := r.judged(&q)
 		return err == nil && d.Judgement.Verdict == rules.Met
 	}
-	low, high := math.Ceil(now*leverLeast), math.Ceil(now)-1
-	if low < 1 || high < low || !meets(low) {
-		return fmt.Sprintf("A smaller %s alone, down to %.0f %% of it, does not meet every limit in the model: look at times, temperatures and air.", name, 100*leverLeast)
-	}
-	for high-low > 1 {
-		if mid := math.Floor((low + high) / 2); meets(mid) {
-			low = mid
+	// Downwards from the present size, since "meets" need not be monotonic: a very small piece loses the heat that it carries over.
+	bad := math.Ceil(now) // the smallest size above the answer that is known not to do
+	good := 0.0
+	for k := 1; k <= leverSteps && good == 0; k++ {
+		mm := math.Floor(now * (1 - (1-leverLeast)*float64(k*k)/(leverSteps*leverSteps)))
+		if mm < 1 || mm >= bad {
+			continue
+		}
+		if meets(mm) {
+			good = mm
 		} else {
-			high = mid
+			bad = mm
 		}
 	}
-	if high > low && meets(high) {
-		low = high
+	if good == 0 {
+		return fmt.Sprintf("No smaller %s that was tried, down to %.0f %%, meets every limit in the model: look at times, temperatures and air.", name, 100*leverLeast)
 	}
-	return fmt.Sprintf("%s%s %.4g mm → %.0f mm would meet every limit in the model.", strings.ToUpper(name[:1]), name[1:], now, low)
+	for bad-good > 1 {
+		if mid := math.Floor((good + bad) / 2); meets(mid) {
+			good = mid
+		} else {
+			bad = mid
+		}
+	}
+	return fmt.Sprintf("%s%s %.4g mm → %.0f mm would meet every limit in the model.", strings.ToUpper(name[:1]), name[1:], now, good)
 }
 
 // governing is the size that decides how fast heat gets in: the smaller of those that end in cooled faces.
