@@ -32,6 +32,9 @@ func newBody(kinds [3]axisKind, radii [3]float64, nd *nodes) *body {
 // index gives the node's number on each axis.
 func (b *body) index(i int) (g [3]int) {
 	n1, n2 := len(b.nodes.x[1]), len(b.nodes.x[2])
+	if n1 == 1 && n2 == 1 {
+		return [3]int{i, 0, 0}
+	}
 	return [3]int{i / (n1 * n2), i / n2 % n1, i % n2}
 }
 
@@ -168,7 +171,8 @@ func (b *body) descend(s snapshot, node int, g, stride [3]int, done [3]bool, sig
 				}
 				return sign * d
 			}
-			x := zeroOfSlope(slope, xs[lo], e.x[a], xs[hi])
+			x := valleyOf([3]float64{xs[lo], xs[g[a]], xs[hi]}, [3]float64{sign * b.buf[node+(lo-g[a])*stride[a]],
+				sign * b.buf[node], sign * b.buf[node+(hi-g[a])*stride[a]]}).bottom(slope)
 			bs.values(x, phi[:n], nil)
 			c := 0.0
 			for m := 0; m < n; m++ {
@@ -211,46 +215,53 @@ func (b *body) settled(node, g, a, stride int, sign float64) bool {
 	return f1-f0 > flatK && slope > 0.25*rise
 }
 
-// zeroOfSlope finds the minimum beside mid, the lowest of three nodes: where slope turns from negative to positive.
-func zeroOfSlope(slope func(float64) float64, lo, mid, hi float64) float64 {
-	fm := slope(mid)
-	fl, fh := fm, fm
-	switch {
-	case fm < 0 && mid < hi:
-		lo = mid
-		if fh = slope(hi); fh <= 0 {
-			return hi
-		}
-	case fm > 0 && mid > lo:
-		hi = mid
-		if fl = slope(lo); fl >= 0 {
-			return lo
-		}
-	default:
-		return mid
+// valley is where a curve of three nodes is looked at for its minimum: mid is the lowest node, bend the curvature of the
+// parabola through the three, start its lowest point.
+type valley struct{ lo, mid, hi, start, bend float64 }
+
+// valleyOf puts a parabola through three nodes; f are the heights.
+func valleyOf(x, f [3]float64) valley {
+	v := valley{lo: x[0], mid: x[1], hi: x[2], start: x[1]}
+	if x[0] == x[1] || x[1] == x[2] { // at an end
+		return v
 	}
-	for it := 0; it < 40 && hi-lo > 1e-5; it++ { // Illinois form of regula falsi (Dowell & Jarratt 1971, BIT 11:168-174)
-		x := lo - fl*(hi-lo)/(fh-fl)
-		if !(x > lo && x < hi) {
-			x = (lo + hi) / 2
-		}
-		f := slope(x)
-		if math.Abs(f)*(hi-lo) < 4e-6 { // K: no more is to be gained
-			return x
-		}
+	left, right := (f[1]-f[0])/(x[1]-x[0]), (f[2]-f[1])/(x[2]-x[1])
+	v.bend = 2 * (right - left) / (x[2] - x[0])
+	if v.bend > 0 {
+		v.start = math.Max(v.lo, math.Min(v.hi, (x[0]+x[1])/2-left/v.bend))
+	}
+	return v
+}
+
+// bottom finds the minimum: where slope turns from negative to positive, by Newton's method with a curvature that is kept up to date
+// by secants, and by halving where that leaves the bracket. The end of the bracket where there is none.
+func (v valley) bottom(slope func(float64) float64) float64 {
+	lo, hi, x, bend := v.lo, v.hi, v.start, v.bend
+	f := slope(x)
+	for it := 0; it < 40 && hi-lo > 1e-5; it++ {
 		if f < 0 {
-			if lo = x; fl*f > 0 {
-				fh /= 2
-			}
-			fl = f
+			lo = x
 		} else {
-			if hi = x; fh*f > 0 {
-				fl /= 2
-			}
-			fh = f
+			hi = x
 		}
+		next := x - f/bend
+		if bend <= 0 || !(next > lo && next < hi) {
+			switch {
+			case it == 0 && f < 0 && slope(hi) <= 0:
+				return hi
+			case it == 0 && f > 0 && slope(lo) >= 0:
+				return lo
+			}
+			next = (lo + hi) / 2
+		}
+		if math.Abs(f*(next-x)) < 2e-6 { // K: no more is to be gained
+			return next
+		}
+		g := slope(next)
+		bend = (g - f) / (next - x)
+		x, f = next, g
 	}
-	return (lo + hi) / 2
+	return x
 }
 
 // Scan gives the first look at the history; it is made once and shared, so do not change it.

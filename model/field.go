@@ -494,6 +494,11 @@ type tensorShot struct {
 	amp    []float64  // what decays
 	all    []float64  // what the media hold, made when asked for
 	of     *tensorSeg // the segment that all belongs to
+	moving bool       // a medium changes in it
+	rest   []float64  // one axis: all as polynomials
+	known  bool       // rest is filled
+	line   []float64  // one axis: the whole field as polynomials
+	lined  bool       // line is filled for this instant
 	last   []int      // by the first two axes: how many modes of the third are worth looking at
 	b1, b2 []float64
 }
@@ -506,6 +511,7 @@ func (f *tensor) at(t float64) snapshot {
 	s.sg = &f.segs[f.segAt(t)]
 	s.tau = math.Min(math.Max(t-s.sg.t0, 0), s.sg.t1-s.sg.t0)
 	s.keep = f.decaying(s.sg, s.tau, s.amp)
+	s.lined = false
 	return s
 }
 
@@ -633,14 +639,14 @@ func (s *tensorShot) grid(out []float64) {
 // resting gives all modes of what the media hold at the instant.
 func (s *tensorShot) resting() []float64 {
 	st := s.sg.step
-	moving := false
+	s.moving = false
 	for _, x := range s.sg.slope {
-		moving = moving || x != 0
+		s.moving = s.moving || x != 0
 	}
 	if s.all == nil {
 		s.all = make([]float64, s.f.size())
 	}
-	if s.of == s.sg && !moving {
+	if s.of == s.sg && !s.moving {
 		return s.all
 	}
 	s.of = s.sg
@@ -658,6 +664,10 @@ func (s *tensorShot) resting() []float64 {
 
 func (s *tensorShot) slice(axis int, x coord, out []float64) {
 	f := s.f
+	if f.single() {
+		s.only(out)
+		return
+	}
 	st := s.sg.step
 	n := [3]int{f.axes[0].n, f.axes[1].n, f.axes[2].n}
 	var v [3][maxDegrees]float64
@@ -695,16 +705,34 @@ func (s *tensorShot) slice(axis int, x coord, out []float64) {
 			}
 		}
 	}
-	if f.single() {
-		copy(q[:], s.amp[:s.keep[0]])
-		for i, c := range s.resting() {
-			q[i] += c
-		}
-	} else {
-		sumUp(s.amp, s.keep, s.last)
-		sumUp(s.resting(), n, nil)
-	}
+	sumUp(s.amp, s.keep, s.last)
+	sumUp(s.resting(), n, nil)
 	toPolynomials(n[axis], st.ax[axis].b, q[:], out)
+}
+
+// only gives the polynomials of a field with one axis; they are the same for every place and made once an instant.
+func (s *tensorShot) only(out []float64) {
+	n, b := s.f.axes[0].n, s.sg.step.ax[0].b
+	if s.rest == nil {
+		s.rest, s.line = make([]float64, n), make([]float64, n)
+	}
+	before := s.of
+	if all := s.resting(); s.of != before || s.moving || !s.known {
+		toPolynomials(n, b, all, s.rest)
+		s.known = true
+	}
+	if !s.lined {
+		amp := s.amp[:s.keep[0]]
+		for m := range s.line {
+			sum := s.rest[m]
+			for i, v := range b[m*n : m*n+len(amp)] {
+				sum += v * amp[i]
+			}
+			s.line[m] = sum
+		}
+		s.lined = true
+	}
+	copy(out, s.line)
 }
 
 // toPolynomials turns modes into polynomials: out = b·q.

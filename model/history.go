@@ -26,6 +26,7 @@ type FilmUsed struct {
 // History is the temperature of every place in a food from the start of the chain to its end.
 // A prediction and a probe record are the same type.
 type History struct {
+	Product  *Product // whose temperatures they are, for the words about places; nil for a record
 	Spans    []Span
 	Recorded bool // a probe record: only the places of Points exist
 	// At gives the temperature in °C of a place at t seconds from the start of the chain:

@@ -131,7 +131,10 @@ func (s *solver) degrees(a, more int) int {
 	}
 	n *= 1 + 0.15*float64(more)
 	if s.kinds[a] == planeFull {
-		n *= 2
+		n *= 1.85
+		if s.used == 3 {
+			n *= 1.08
+		}
 	}
 	return min(max(int(math.Round(n)), 6), maxDegrees)
 }
@@ -205,7 +208,7 @@ func nodesOf(kind axisKind, used int, coarse bool) []float64 {
 
 // run solves the chain once, deciding on the way what depends on the temperatures: properties, films, ends of steps.
 func (s *solver) run(more int) *History {
-	h := &History{Points: append([]Point{{Name: "centre"}}, s.product.Points...)}
+	h := &History{Product: s.product, Points: append([]Point{{Name: "centre"}}, s.product.Points...)}
 	axes, nd := s.grid(func(a int) int { return s.degrees(a, more) }, false)
 	h.body = newBody(s.kinds, s.radii, nd)
 	s.chain = s.chain[:0]
@@ -231,7 +234,7 @@ func (s *solver) run(more int) *History {
 		t += cs.durS
 		span.EndS = t
 		h.Spans = append(h.Spans, span)
-		if i+1 < len(s.steps) {
+		if i+1 < len(s.steps) && s.searches(&s.steps[i+1]) {
 			lo, hi = h.body.range_(s.main.at(t))
 		}
 		if span.MediumFromC != nil && h.Bound == "" {
@@ -278,11 +281,10 @@ func (s *solver) ready(span *Span, axes [3]*axis, nd *nodes, lo, hi float64) *ch
 			cold, hot = math.Min(cold, m), math.Max(hot, m)
 		}
 	}
-	constant := !s.product.Food.Composed
 	for try := 0; ; try++ {
 		mean := (math.Min(cold, 100) + math.Min(hot, 100)) / 2
 		cs := s.film(span, mean)
-		if try == 2 || constant && !s.filmsDepend(st) {
+		if try == 2 || !s.searches(st) {
 			return cs
 		}
 		s.chain = append(s.chain, cs)
@@ -297,8 +299,11 @@ func (s *solver) ready(span *Span, axes [3]*axis, nd *nodes, lo, hi float64) *ch
 	}
 }
 
-// filmsDepend tells whether a film of the step depends on the food's temperature.
-func (s *solver) filmsDepend(st *Step) bool {
+// searches tells whether properties or films of the step depend on the food's temperature, so that it has to be solved to know them.
+func (s *solver) searches(st *Step) bool {
+	if s.product.Food.Composed {
+		return true
+	}
 	for _, e := range exposures(s.product.Shape, st) {
 		if e.filmDepends() {
 			return true
