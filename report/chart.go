@@ -193,7 +193,7 @@ func (f *chart) plotBands(c draw.Canvas, x func(float64) vg.Length, taken *label
 		}
 		room := float64(x(b.to)-x(b.from)) * mmPerPt
 		s := f.fit(b.name, i, room-1)
-		if b.short != "" && !strings.HasSuffix(s, b.name) {
+		if b.short != "" && !strings.HasSuffix(s, unseen{}.clean(b.name)) {
 			s = f.fit(b.short, i, room-1)
 		}
 		c.FillText(st, vg.Point{X: x(b.from) + 2.5, Y: c.Max.Y - 2}, s)
@@ -204,14 +204,11 @@ func (f *chart) plotBands(c draw.Canvas, x func(float64) vg.Length, taken *label
 	}
 }
 
-// fit gives the name of a step as far as it fits: with its number, cut, the number alone, or nothing.
+// fit gives the name of a step as far as it fits: with its number, or the number alone, which the sentence below names; never cut.
 func (f *chart) fit(name string, i int, room float64) string {
 	clean := unseen{}.clean(name)
 	number := plain(float64(i+1), 0, nearest)
 	if s := number + " " + clean; widthMM(s, f.size, true) <= room {
-		return s
-	}
-	if s := shorten(number+" "+clean, room, f.size, true); len([]rune(s)) > 6 {
 		return s
 	}
 	if widthMM(number, f.size, true) <= room {

@@ -32,11 +32,44 @@ func tightness(f *rules.Finding) float64 {
 	return t
 }
 
+// madeByUntil is the step whose end sets a finding's margin in K: it ends when the slowest place reaches a temperature that lies
+// just that far beyond the limit's own. Such a margin says what was typed in Until, and nothing of the food. "" if there is none.
+func (p *Product) madeByUntil(f *rules.Finding) string {
+	h := p.History
+	if f.LowConductivity && p.Low != nil {
+		h = p.Low
+	}
+	if h == nil || f.Limit == nil || f.Verdict != rules.Met || !finite(f.MarginK) {
+		return ""
+	}
+	const near = 0.3 // K: the slowest place ends the step, and the limit may be about another
+	for _, own := range []*float64{f.Limit.FromC, f.Limit.ToC} {
+		for _, sp := range h.Spans {
+			if own != nil && sp.Step != nil && sp.Step.UntilC != nil && sp.Reached != nil && *sp.Reached &&
+				math.Abs(*f.MarginK-math.Abs(*own-*sp.Step.UntilC)) < near {
+				return sp.Step.Name
+			}
+		}
+	}
+	return ""
+}
+
+// tightness is that of a finding, without a margin that the end of a step makes: the room in time counts then, or none.
+func (p *Product) tightness(f *rules.Finding) float64 {
+	if p.madeByUntil(f) == "" {
+		return tightness(f)
+	}
+	g := *f
+	g.MarginK = nil
+	return tightness(&g)
+}
+
 // weight orders verdicts, the worst first.
 func weight(v rules.Verdict) int { return [...]int{1, 2, 0, 3}[v] }
 
 // worstFirst gives the findings in the order of their weight: must before advice, not met, cannot tell, met by the tightest, not applicable.
-func worstFirst(fs []rules.Finding) []*rules.Finding {
+func (p *Product) worstFirst() []*rules.Finding {
+	fs := p.Judgement.Findings
 	out := make([]*rules.Finding, len(fs))
 	for i := range fs {
 		out[i] = &fs[i]
@@ -53,7 +86,7 @@ func worstFirst(fs []rules.Finding) []*rules.Finding {
 		case a.Verdict != b.Verdict:
 			return weight(a.Verdict) < weight(b.Verdict)
 		}
-		return tightness(a) < tightness(b)
+		return p.tightness(a) < p.tightness(b)
 	})
 	return out
 }
@@ -64,7 +97,7 @@ func (p *Product) decides() *deciding {
 	if d.history == nil {
 		d.history = &model.History{}
 	}
-	for _, f := range worstFirst(p.Judgement.Findings) {
+	for _, f := range p.worstFirst() {
 		if f.Level == "must" && f.Verdict != rules.NotApplicable {
 			d.finding = f
 			break
@@ -84,7 +117,7 @@ func (p *Product) decides() *deciding {
 		d.placeName = say("anywhere")
 	}
 	if d.placeName == "" || d.placeName == "every point" {
-		d.placeName = placeWords(p.Product.Shape, d.place)
+		d.placeName = p.Product.Where(d.place)
 	}
 	return d
 }
@@ -107,7 +140,7 @@ func (p *Product) Row() Row {
 	r := Row{Product: p.Product.Name, Process: p.Process, Verdict: p.Judgement.Verdict, Why: p.Judgement.Why, tight: math.Inf(1)}
 	if d := p.decides(); d.finding != nil {
 		f := d.finding
-		r.MarginK, r.MarginS, r.tight = f.MarginK, f.MarginS, tightness(f)
+		r.MarginK, r.MarginS, r.tight = f.MarginK, f.MarginS, p.tightness(f)
 		if f.Limit != nil {
 			r.Deciding = f.Limit.Name
 		}

@@ -6,7 +6,6 @@ import (
 	"strconv"
 	"strings"
 
-	"slowpoint/model"
 	"slowpoint/rules"
 )
 
@@ -106,39 +105,6 @@ func duration(s float64, r rounding) string {
 // mm writes a length (m) in mm.
 func mm(m float64) string { return plain(m*1000, 1, nearest) + " mm" }
 
-// placeWords says where a place lies, from the geometric centre of the shape.
-func placeWords(shape *model.Shape, p model.Place) string {
-	const near = 0.00005 // m: what a tenth of a millimetre rounds to nothing
-	var parts []string
-	radial := shape == model.Sphere || shape == model.Cylinder
-	axial := shape == model.ShortCylinder || shape == model.Spheroid
-	switch {
-	case math.Abs(p.UpM) < near:
-	case radial && shape == model.Cylinder:
-		parts = append(parts, mm(math.Abs(p.UpM))+" from the axis")
-	case radial:
-		parts = append(parts, mm(math.Abs(p.UpM))+" from the centre")
-	case p.UpM > 0:
-		parts = append(parts, mm(p.UpM)+" above the centre")
-	default:
-		parts = append(parts, mm(-p.UpM)+" below the centre")
-	}
-	switch {
-	case math.Abs(p.AcrossM) < near:
-	case axial:
-		parts = append(parts, mm(math.Abs(p.AcrossM))+" from the axis")
-	default:
-		parts = append(parts, mm(math.Abs(p.AcrossM))+" to the side")
-	}
-	if math.Abs(p.AlongM) >= near {
-		parts = append(parts, mm(math.Abs(p.AlongM))+" along the length")
-	}
-	if len(parts) == 0 {
-		return "centre"
-	}
-	return strings.Join(parts, ", ")
-}
-
 // needsMore tells whether a larger value is the better one for a finding; it decides which way a value is rounded.
 func needsMore(f *rules.Finding) bool {
 	l := f.Limit
@@ -173,13 +139,19 @@ func (h *Head) quantity(f *rules.Finding, v *float64, asked bool) string {
 	}
 	switch f.Unit {
 	case "min":
+		lethal := f.Limit != nil && f.Limit.Kind == rules.Lethality
+		tail := ""
+		switch {
+		case lethal:
+		case *v >= 60 && !asked:
+			tail = " (" + duration(*v*60, r) + ")"
+		case *v > 0 && *v < 1:
+			tail = " (" + plain(*v*60, 1, r) + " s)"
+		}
 		if asked {
-			return plain(*v, 4, nearest) + " min"
+			return plain(*v, 4, nearest) + " min" + tail
 		}
-		if *v >= 60 {
-			return decimal(*v, 1, r) + " min (" + duration(*v*60, r) + ")"
-		}
-		return decimal(*v, 1, r) + " min"
+		return decimal(*v, 1+btoi(*v > 0 && *v < 1), r) + " min" + tail
 	case "°C":
 		if asked {
 			return h.stated(*v)

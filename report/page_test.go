@@ -178,7 +178,7 @@ func TestWorstFirst(t *testing.T) {
 	}
 	fs := []rules.Finding{f("must", rules.NotApplicable, -9), f("advice", rules.NotMet, -8), f("must", rules.Met, 5), f("must", rules.CannotTell, 0.1), f("must", rules.NotMet, -1), f("must", rules.NotMet, -3), f("must", rules.Met, 0.4)}
 	var got []float64
-	for _, f := range worstFirst(fs) {
+	for _, f := range (&Product{Judgement: rules.Judgement{Findings: fs}}).worstFirst() {
 		got = append(got, *f.MarginK)
 	}
 	if want := []float64{-3, -1, 0.1, 0.4, 5, -8, -9}; !slices.Equal(got, want) {

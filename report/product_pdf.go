@@ -28,7 +28,7 @@ func (d *doc) product(p *Product) {
 	if p.recorded() {
 		d.note = say("footer measured")
 	}
-	x := &sheet{doc: d, p: p, decides: p.decides(), order: worstFirst(p.Judgement.Findings), cautions: Cautions(d.head, p)}
+	x := &sheet{doc: d, p: p, decides: p.decides(), order: p.worstFirst(), cautions: Cautions(d.head, p)}
 	x.operator()
 	x.front()
 	x.limits()
@@ -49,7 +49,7 @@ type sheet struct {
 	decides  *deciding
 	order    []*rules.Finding // worst first
 	cautions []Caution
-	short    bool // the page for the kitchen is crowded: fewer lines for each thing
+	short    int // how crowded the page for the kitchen is: 1 fewer checks, 2 very long names are cut
 }
 
 // recorded tells whether the product was judged by a measured record.
@@ -78,11 +78,23 @@ func (x *sheet) headline() string {
 	room := x.head.room(f)
 	switch {
 	case f.Verdict == rules.Met && room != "":
-		return say("headline met", x.source(), f.Limit.Name, room)
+		return say("headline met", x.source(), f.Limit.Name, room) + x.lessRoom(f)
 	case f.Verdict == rules.NotMet && room != "":
 		return say("headline not met", f.Limit.Name, x.source(), room)
 	}
 	return say("headline plain", f.Limit.Name, f.Verdict.String(), f.Why)
+}
+
+// lessRoom names a limit that has less room than the tightest, only because a step ends at a temperature near it; "" if there is none.
+func (x *sheet) lessRoom(tightest *rules.Finding) string {
+	for _, f := range x.order {
+		if f != tightest && f.Level == "must" && f.Verdict == rules.Met && f.Limit != nil && finite(tightest.MarginK) && finite(f.MarginK) && *f.MarginK < *tightest.MarginK {
+			if step := x.p.madeByUntil(f); step != "" {
+				return say("headline until", f.Limit.Name, x.head.difference(*f.MarginK, down), step)
+			}
+		}
+	}
+	return ""
 }
 
 // counts tells how many limits have which verdict.
@@ -93,7 +105,25 @@ func (x *sheet) counts() string {
 			n[f.Verdict]++
 		}
 	}
-	return say("counts", n[rules.Met], n[rules.NotMet], n[rules.CannotTell], n[rules.NotApplicable])
+	return say("counts", tallied(n))
+}
+
+// tallied says how many have which verdict, and nothing of verdicts that none has.
+func tallied(n [4]int) string {
+	var s []string
+	for _, c := range []struct {
+		n     int
+		words string
+	}{{n[rules.Met], say("count met", n[rules.Met])}, {n[rules.NotMet], say("count not met", n[rules.NotMet])},
+		{n[rules.CannotTell], say("count cannot tell", n[rules.CannotTell])}, {n[rules.NotApplicable], say("count not applicable", n[rules.NotApplicable])}} {
+		if c.n > 0 {
+			s = append(s, c.words)
+		}
+	}
+	if len(s) == 0 {
+		return say("count none")
+	}
+	return strings.Join(s, ", ")
 }
 
 // operator is the one page for whoever cooks and probes.
@@ -124,8 +154,8 @@ func (x *sheet) operator() {
 	}
 	x.verdictBox()
 	below := x.advice(true)
-	if bottomY-d.y-below < 4*height(kitchen)+45 {
-		x.short = true
+	for x.short < 2 && bottomY-d.y-below < x.captionTall()+chartLeast+4 {
+		x.short++
 		below = x.advice(true)
 	}
 	x.operatorChart(below)
@@ -157,12 +187,27 @@ func (x *sheet) operatorChart(below float64) {
 		return
 	}
 	d := x.doc
-	sentence := capped(d.clean(x.slowestSentence()), frameWide, kitchen, 4)
-	lines := wrap(sentence, frameWide, kitchen, false)
-	h := min(max(bottomY-d.y-below-float64(len(lines))*height(kitchen)-3, 40), 86)
+	sentence := x.caption()
+	h := min(max(bottomY-d.y-below-x.captionTall()-3, chartLeast), 86)
 	d.head.history(x.p, x.decides, kitchen, 92, false).draw(d.canvas(d.left, d.y, frameWide, h))
 	d.y += h + 1
 	d.para(sentence, style{size: kitchen, after: 2})
+}
+
+// chartLeast is the least height of the chart on the page for the kitchen, mm.
+const chartLeast = 40.0
+
+// caption is the sentence under the chart on the page for the kitchen.
+func (x *sheet) caption() string {
+	if x.p.History == nil {
+		return ""
+	}
+	return capped(x.clean(x.slowestSentence()), frameWide, kitchen, [...]int{9, 9, 4}[x.short])
+}
+
+// captionTall is its height, mm.
+func (x *sheet) captionTall() float64 {
+	return float64(len(wrap(x.caption(), frameWide, kitchen, false))) * height(kitchen)
 }
 
 // slowestSentence says what the line of the slowest place shows.
@@ -170,11 +215,14 @@ func (x *sheet) slowestSentence() string {
 	h, hist := x.head, x.decides.history
 	var s []string
 	for i, sp := range hist.Spans {
-		if i == 4 && len(hist.Spans) > 5 {
-			break
+		if n := len(hist.Spans); n > 6 && i == 4 {
+			s = append(s, say("more steps", n-5))
+		} else if n > 6 && i > 4 && i < n-1 {
+			continue
+		} else {
+			c := hist.At(x.decides.place, sp.EndS)
+			s = append(s, say("at the end of", i+1, sp.Step.Name, duration(sp.EndS, nearest), h.temperature(c, x.cautious(sp.EndS))))
 		}
-		c := hist.At(x.decides.place, sp.EndS)
-		s = append(s, say("at the end of", sp.Step.Name, duration(sp.EndS, nearest), h.temperature(c, x.cautious(sp.EndS))))
 	}
 	key := "chart sentence"
 	if hist == x.p.Low {
@@ -184,10 +232,14 @@ func (x *sheet) slowestSentence() string {
 		key = "chart sentence record"
 	}
 	out := say(key, x.decides.placeName, strings.Join(s, "; "))
+	var broken []string
 	for i, p := range newTimeAxis(hist).pieces {
 		if p.broken {
-			out += say("axis broken", hist.Spans[i].Step.Name, duration(p.t1-p.t0, nearest))
+			broken = append(broken, say("axis piece", i+1, duration(p.t1-p.t0, nearest)))
 		}
+	}
+	if len(broken) > 0 {
+		out += say("axis broken", strings.Join(broken, ", "))
 	}
 	return out
 }
@@ -215,7 +267,7 @@ func (x *sheet) checks() []string {
 		seen[f.Limit.Name] = true
 		due = append(due, f)
 	}
-	due = distinct(due, 3)
+	due = distinct(due, 3-btoi(x.short > 0))
 	sort.SliceStable(due, func(i, j int) bool { return instant(due[i]) < instant(due[j]) })
 	var out []string
 	for _, f := range due {
@@ -225,9 +277,9 @@ func (x *sheet) checks() []string {
 		}
 		when := say("check any time")
 		if finite(f.AtS) {
-			when = say("check at", duration(*f.AtS, nearest), x.stepAt(f))
+			when = say("check at", duration(*f.AtS, nearest), x.stepAt(f)+x.checkRun(f))
 		}
-		line := capped(x.clean(say("check", when, place, x.head.plainly(f.Limit))), frameWide-widthMM("1.  ", kitchen, false), kitchen, 3-btoi(x.short))
+		line := capped(x.clean(say("check", when, place, x.head.plainly(f.Limit))), frameWide-widthMM("1.  ", kitchen, false), kitchen, [...]int{5, 5, 2}[x.short])
 		if !slices.Contains(out, line) {
 			out = append(out, line)
 		}
@@ -236,6 +288,20 @@ func (x *sheet) checks() []string {
 		out = append(out, say("check nothing"))
 	}
 	return out
+}
+
+// checkRun names the run of a check where that is not the one of the picture.
+func (x *sheet) checkRun(f *rules.Finding) string {
+	low := x.decides.history == x.p.Low && x.p.Low != nil
+	switch sp := x.differs(); {
+	case f.LowConductivity == low:
+		return ""
+	case low:
+		return say("check usual")
+	case sp != nil:
+		return say("check low ends", sp.Step.Name, duration(sp.EndS, nearest))
+	}
+	return say("check low")
 }
 
 // distinct keeps the first n findings that differ in what is asked, where and when.
@@ -290,7 +356,7 @@ func (x *sheet) advice(dry bool) float64 {
 	if lever == "" {
 		lever = say("lever none")
 	}
-	lever = capped(d.clean(lever), frameWide, kitchen, 4-2*btoi(x.short))
+	lever = capped(d.clean(lever), frameWide, kitchen, [...]int{4, 4, 2}[x.short])
 	checks := x.checks()
 	foot := say("operator decides")
 	if x.p.recorded() {
@@ -506,27 +572,72 @@ func (x *sheet) card(f *rules.Finding) {
 	if value != "" && finite(f.Required) {
 		value = say("card value", value, h.quantity(f, f.Required, true))
 	}
-	where := f.PlaceName
-	if f.Place != nil && f.PlaceName != "" && f.PlaceName != x.where(*f.Place) {
-		where = say("card where", f.PlaceName, x.where(*f.Place))
-	}
-	when := ""
-	if finite(f.AtS) {
-		when = say("card when", duration(*f.AtS, nearest), x.stepAt(f))
-	}
 	rows := [][2]string{
 		{say("card asks"), say("card asks line", kind, h.asks(l), stages(l), whereAsked(l), f.Level)},
 		{say("card found"), strings.Trim(value+"; "+f.Why, "; ")},
-		{say("card margin"), h.room(f)},
-		{say("card place"), joined(where, when)},
+		{say("card margin"), x.marginWords(f)},
+		{say("card place"), x.placeAndTime(f)},
 		{say("card clock"), x.clockWords(f)},
 		{say("card notes"), strings.Join(f.Notes, "; ")},
 		{say("card citation"), x.cited(l)},
-		{say("card hazard"), joined(prefixed("CCP ", l.CCP), l.Hazard, l.Status, l.Note)},
+		{say("card ccp"), l.CCP},
+		{say("card hazard"), l.Hazard},
+		{say("card status"), l.Status},
+		{say("card note"), l.Note},
 		{say("card cells"), refs(f.Cells)},
 	}
 	d.section(say("card title", title, verdictWord(f.Verdict)), 2, min(d.pairsHeight(rows, 36)+1, 150), 1)
 	d.pairs(rows, 36)
+}
+
+// placeAndTime is where and when a finding is decided, and in which run.
+func (x *sheet) placeAndTime(f *rules.Finding) string {
+	where, when := f.PlaceName, ""
+	if f.Place != nil {
+		if lies := x.p.Product.Lies(*f.Place); where == "" {
+			where = lies
+		} else if where != lies {
+			where = say("card where", where, lies)
+		}
+	}
+	if finite(f.AtS) {
+		when = say("card when", duration(*f.AtS, nearest), x.stepAt(f)) + x.inRun(f)
+	}
+	return joined(where, when)
+}
+
+// inRun names the run that the times of a finding belong to; "" for the run with the listed conductivity.
+func (x *sheet) inRun(f *rules.Finding) string {
+	if !f.LowConductivity {
+		return ""
+	}
+	if sp := x.differs(); sp != nil {
+		return say("in low run ends", sp.Step.Name, duration(sp.EndS, nearest))
+	}
+	return say("in low run")
+}
+
+// differs is the first step of the run with 0.9 × conductivity whose end tells the two runs apart; nil if there is none.
+func (x *sheet) differs() *model.Span {
+	if x.p.Low == nil || x.p.History == nil {
+		return nil
+	}
+	for i := range x.p.Low.Spans {
+		sp := &x.p.Low.Spans[i]
+		if i < len(x.p.History.Spans) && math.Abs(sp.EndS-x.p.History.Spans[i].EndS) >= 60 && sp.Step != nil {
+			return sp
+		}
+	}
+	return nil
+}
+
+// marginWords is the room of a finding, and what sets it where that is the end of a step.
+func (x *sheet) marginWords(f *rules.Finding) string {
+	s := x.head.room(f)
+	if step := x.p.madeByUntil(f); step != "" {
+		s += say("room until", x.head.difference(*f.MarginK, down), step)
+	}
+	return s
 }
 
 // whereAsked is the place that the limit is about, as typed.
@@ -559,6 +670,9 @@ func (x *sheet) clockWords(f *rules.Finding) string {
 	if finite(f.ClockEndS) {
 		s = append(s, say("clock ended", duration(*f.ClockEndS, nearest)))
 	}
+	if len(s) > 0 && (finite(f.ClockStartS) || finite(f.ClockEndS)) {
+		return strings.Join(s, "; ") + x.inRun(f)
+	}
 	return strings.Join(s, "; ")
 }
 
@@ -570,13 +684,6 @@ func joined(parts ...string) string {
 		}
 	}
 	return strings.Join(s, "; ")
-}
-
-func prefixed(before, s string) string {
-	if s == "" {
-		return ""
-	}
-	return before + s
 }
 
 func refs(rs []cell.Ref) string {
@@ -686,56 +793,13 @@ func sampleAt(times []float64, t float64) int {
 	return -1
 }
 
-// where says where a place lies, in the way of the findings: from the underside or the centre, or on which face.
-func (x *sheet) where(at model.Place) string {
-	shape, z := x.p.Product.Shape, x.p.Product.Size
-	if shape == model.Stirred {
-		return say("anywhere")
-	}
-	if math.Abs(at.UpM) < 1e-5 && math.Abs(at.AcrossM) < 1e-5 && math.Abs(at.AlongM) < 1e-5 {
-		return say("centre")
-	}
-	half, across, along := z.ThicknessM/2, z.WidthM/2, z.LengthM/2
-	switch shape {
-	case model.Cylinder, model.Sphere:
-		if at.UpM > z.DiameterM/2-1e-6 {
-			return say("surface")
-		}
-		return say("from centre", decimal(at.UpM*1000, 0, nearest))
-	case model.ShortCylinder:
-		half, across = z.LengthM/2, z.DiameterM/2
-	}
-	s := say("above underside", decimal((at.UpM+half)*1000, 0, nearest))
-	switch {
-	case math.Abs(at.UpM-half) < 1e-6:
-		s = model.Top.Name
-	case math.Abs(at.UpM+half) < 1e-6:
-		s = model.Underside.Name
-	case math.Abs(at.UpM) < 1e-5:
-		s = say("half way up")
-	}
-	switch {
-	case across > 0 && math.Abs(math.Abs(at.AcrossM)-across) < 1e-6:
-		s += say("at the side")
-	case math.Abs(at.AcrossM) > 5e-4:
-		s += say("mm across", decimal(math.Abs(at.AcrossM)*1000, 0, nearest))
-	}
-	switch {
-	case shape == model.Brick && math.Abs(math.Abs(at.AlongM)-along) < 1e-6:
-		s += say("at the end")
-	case math.Abs(at.AlongM) > 5e-4:
-		s += say("mm along", decimal(math.Abs(at.AlongM)*1000, 0, nearest))
-	}
-	return s
-}
-
 // extremePlace words where the coldest or hottest place is at a sample; a hundredth of a degree from the centre is the centre,
 // for a food of one temperature has no place of its own.
 func (x *sheet) extremePlace(i int, c []float64, at []model.Place) string {
 	if pts := x.p.Samples.Points; len(pts) > 0 && i < len(pts[0]) && math.Abs(pts[0][i]-c[i]) < 0.01 {
-		return x.where(model.Place{})
+		return x.p.Product.Where(model.Place{})
 	}
-	return x.where(at[i])
+	return x.p.Product.Where(at[i])
 }
 
 // moves says in words how the coldest and the hottest place move.

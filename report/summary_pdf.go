@@ -43,7 +43,11 @@ func (d *doc) summary(rows []Row) {
 		n[overall(r.Verdict)]++
 	}
 	list = listed(nil, list)
-	d.para(say("summary sentence", len(rows), n[rules.Met], n[rules.NotMet], n[rules.CannotTell], len(h.NotCalculated)), style{size: 11, bold: true, after: 2})
+	sentence := say("summary sentence", len(rows), tallied(n))
+	if len(h.NotCalculated) > 0 {
+		sentence += say("summary refused", len(h.NotCalculated))
+	}
+	d.para(sentence, style{size: 11, bold: true, after: 2})
 	if len(h.NotCalculated) > 0 {
 		d.notCalculated()
 	}

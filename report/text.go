@@ -145,7 +145,7 @@ func (t *Text) Add(p *Product) error {
 		return errors.New("report.txt: a product without a history")
 	}
 	t.rows = append(t.rows, slimOf(t.h, p, len(t.rows)+1))
-	x := &sheet{doc: &doc{head: t.h}, p: p, decides: p.decides(), order: worstFirst(p.Judgement.Findings), cautions: Cautions(t.h, p)}
+	x := &sheet{doc: &doc{head: t.h}, p: p, decides: p.decides(), order: p.worstFirst(), cautions: Cautions(t.h, p)}
 	t.heading(1, "product", len(t.rows), p.Product.Name)
 	t.line("verdict", overall(p.Judgement.Verdict), x.headline())
 	t.plain(x.counts())
@@ -219,27 +219,18 @@ func (t *Text) finding(x *sheet, f *rules.Finding) [][2]string {
 	if value != "" && finite(f.Required) {
 		value = say("card value", value, h.quantity(f, f.Required, true))
 	}
-	where := f.PlaceName
-	if f.Place != nil {
-		if w := placeWords(x.p.Product.Shape, *f.Place); where == "" {
-			where = w
-		} else if where != w {
-			where = say("card where", where, w)
-		}
-	}
-	when := ""
-	if finite(f.AtS) {
-		when = say("card when", duration(*f.AtS, nearest), x.stepAt(f))
-	}
 	return [][2]string{
 		{say("card asks"), say("card asks line", ruleName(l), h.asks(l), stages(l), whereAsked(l), f.Level)},
 		{say("card found"), joined(value, f.Why)},
-		{say("card margin"), h.room(f)},
-		{say("card place"), joined(where, when)},
+		{say("card margin"), x.marginWords(f)},
+		{say("card place"), x.placeAndTime(f)},
 		{say("card clock"), x.clockWords(f)},
 		{say("card notes"), strings.Join(f.Notes, "; ")},
 		{say("card citation"), x.cited(l)},
-		{say("card hazard"), joined(prefixed("CCP ", l.CCP), l.Hazard, l.Status, l.Note)},
+		{say("card ccp"), l.CCP},
+		{say("card hazard"), l.Hazard},
+		{say("card status"), l.Status},
+		{say("card note"), l.Note},
 		{say("card cells"), refs(f.Cells)},
 	}
 }
@@ -297,7 +288,7 @@ func (t *Text) atEnd(p *Product, at float64) []string {
 	var out []string
 	place := func(key string, c []float64, where []model.Place, r rounding) {
 		if i < len(c) && i < len(where) && finite(&c[i]) {
-			out = append(out, fmt.Sprintf(textWords[key], h.temperature(c[i], r), placeWords(p.Product.Shape, where[i])))
+			out = append(out, fmt.Sprintf(textWords[key], h.temperature(c[i], r), p.Product.Where(where[i])))
 		}
 	}
 	place("coldest", s.Coldest, s.ColdestAt, down)

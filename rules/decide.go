@@ -89,7 +89,7 @@ func (v *view) judgePlaces(q question) Finding {
 		place := cs[best].place
 		f.Place, f.PlaceName = &place, s.name
 		if s.name == "" || s.surfaceOnly {
-			f.PlaceName = v.placeName(place, s.surfaceOnly)
+			f.PlaceName = v.placeName(place)
 		}
 	} else {
 		f.PlaceName = s.name
@@ -158,7 +158,7 @@ func (v *view) edges(from model.Place, q question, surfaceOnly bool) []model.Pla
 	for k := range v.c.marks {
 		for _, way := range []int{-1, 1} {
 			to, ok := v.c.beside(from, k, way)
-			if !ok || surfaceOnly && v.placeName(from, false) != v.placeName(to, false) || counts(to) {
+			if !ok || surfaceOnly && !v.onSurface(to) || counts(to) {
 				continue
 			}
 			in, out := from, to
@@ -368,13 +368,13 @@ func (v *view) weigh(f *Finding, o outcome, q question, cs []candidate) (tail st
 		}
 		if word != "" {
 			f.Verdict = CannotTell
-			h := holes{"error": kelvinUp(v.errK)}
+			h := holes{"error": v.l.differenceUp(v.errK)}
 			if f.MarginK == nil || math.Abs(*f.MarginK) > v.errK*1.5 {
 				word = "within error"
 			} else {
-				h["by"] = kelvinUp(math.Abs(*f.MarginK))
+				h["by"] = v.l.differenceUp(math.Abs(*f.MarginK))
 			}
-			return say(word, h)
+			return say(word, h) + v.turns(f)
 		}
 	}
 	if f.Verdict == Met && q.warm && v.h.Bound != "" && v.past(v.h.BoundFromS) && !same(v.l.Where.Name, "medium") {
@@ -387,6 +387,16 @@ func (v *view) weigh(f *Finding, o outcome, q question, cs []candidate) (tail st
 	if o.sparse != "" && f.Verdict == Met {
 		f.Verdict = CannotTell
 		return o.sparse
+	}
+	return ""
+}
+
+// turns says what to do where a step that ends by Until ends at the very limit; "" elsewhere.
+func (v *view) turns(f *Finding) string {
+	for _, sp := range v.h.Spans {
+		if sp.Step != nil && sp.Step.UntilC != nil && sp.Reached != nil && *sp.Reached && f.AtS != nil && math.Abs(sp.EndS-*f.AtS) < 1 {
+			return say("within error until", holes{"step": sp.Step.Name})
+		}
 	}
 	return ""
 }

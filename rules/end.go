@@ -53,7 +53,7 @@ func judgeEnd(v *view) Finding {
 			} else {
 				c := p.value(at)
 				o.value, o.bad = c, -sign*c
-				o.holes = holes{"value": degrees(c, int(-sign)), "when": clockTime(at)}
+				o.holes = holes{"value": l.degrees(c, int(-sign)), "when": clockTime(at)}
 				kept := l.warmSide(level + t.errK + t.ownK)
 				if sign < 0 {
 					kept = l.coldSide(level - t.errK - t.ownK)

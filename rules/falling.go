@@ -20,7 +20,7 @@ func judgeFalling(v *view) Finding {
 		if rise > 0 {
 			o.start, o.end, o.at = from, to, to
 		}
-		o.holes = holes{"value": kelvinUp(rise)}
+		o.holes = holes{"value": l.differenceUp(rise)}
 		// the error shifts a whole course: it weighs only on a rise that is there
 		if seen := rise + t.errK; rise <= sameK || seen <= *l.AllowanceK+sameK {
 			o.verdict = Met

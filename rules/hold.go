@@ -90,7 +90,7 @@ func (v *view) reached() question {
 		o.value, o.bad, o.at = c, -sign*c, at
 		o.slow = sign > 0
 		if !t.rank {
-			o.holes = holes{"value": degrees(c, int(-sign))}
+			o.holes = holes{"value": l.degrees(c, int(-sign))}
 		}
 		if v.heldRegion(t).holds(c) {
 			o.verdict = Met

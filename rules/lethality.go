@@ -44,7 +44,7 @@ func judgeLethality(v *view) Finding {
 		}
 		o.value, o.bad, o.margin, o.slow = best/per, -best/per, math.NaN(), true
 		if !t.rank {
-			o.holes = holes{"value": round(best/per, 2, -1)}
+			o.holes = holes{"value": round(best/per, decimalsOf(best/per, q.unit), -1)}
 		}
 		if l.TimeS != nil {
 			o.margin = best - needS

@@ -35,7 +35,7 @@ func judgeStay(v *view, sign float64) Finding {
 		o.value, o.at, o.bad = c, at, -sign*c
 		if !t.rank {
 			own := l.own()
-			o.holes = holes{"value": degrees(c, int(-sign)), "level": l.operator(sign < 0) + own["bare"]}
+			o.holes = holes{"value": l.degrees(c, int(-sign)), "level": l.operator(sign < 0) + own["bare"]}
 		}
 		if kept.holds(c) {
 			o.verdict = Met

@@ -229,7 +229,7 @@ func TestErrorBand(t *testing.T) {
 		says   string
 	}{
 		{"met by more than the error", Limit{Kind: Hold, FromC: c(70), TimeS: c(0), Counting: Total}, "0:5 60:70.2", 0.1, Met, ""},
-		{"met by less", Limit{Kind: Hold, FromC: c(70), TimeS: c(0), Counting: Total}, "0:5 60:70.05", 0.1, CannotTell, "met by 0.05 K"},
+		{"met by less", Limit{Kind: Hold, FromC: c(70), TimeS: c(0), Counting: Total}, "0:5 60:70.05", 0.1, CannotTell, "met by 0.05 °C"},
 		{"missed by less", Limit{Kind: Hold, FromC: c(70), TimeS: c(0), Counting: Total}, "0:5 60:69.95", 0.1, CannotTell, "missed by 0.05"},
 		{"missed by more", Limit{Kind: Hold, FromC: c(70), TimeS: c(0), Counting: Total}, "0:5 60:69.8", 0.1, NotMet, ""},
 		{"a slow fall: 0.1 K is 10 min at each end", Limit{Kind: CoolWithin, FromC: c(60), ToC: c(59), TimeS: min_(115), Clock: crossing}, "0:61 100:60 200:59 300:58", 0.1, CannotTell, "error"},

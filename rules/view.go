@@ -436,37 +436,28 @@ func (v *view) scope() scope {
 	return scope{why: say("no point", holes{"point": name})}
 }
 
-// placeName says where a place is.
-func (v *view) placeName(p model.Place, surface bool) string {
+// placeName says where a place is, in the one wording that the documents use.
+func (v *view) placeName(p model.Place) string {
 	for _, pt := range v.h.Points {
 		if near(pt.Place, p) {
 			return pt.Name
 		}
 	}
-	x := [3]float64{p.UpM, p.AcrossM, p.AlongM}
-	if near(p, model.Place{}) {
-		return "centre"
+	if v.h.Product == nil { // a record: only its places exist
+		return fmt.Sprintf("%.0f mm above the centre", 1000*p.UpM)
 	}
-	on := surface
+	return v.h.Product.Where(p)
+}
+
+// onSurface tells whether a place lies on the outside of the spots.
+func (v *view) onSurface(p model.Place) bool {
+	x := [3]float64{p.UpM, p.AcrossM, p.AlongM}
 	for k, s := range v.c.size {
 		if s.b > s.a && (math.Abs(x[k]-s.b) < 1e-6 || s.a < 0 && math.Abs(x[k]-s.a) < 1e-6) {
-			on = true
+			return true
 		}
 	}
-	if on {
-		return "surface"
-	}
-	up := fmt.Sprintf("%.0f mm from the centre", 1000*math.Abs(x[0]))
-	if v.c.size[0].a < 0 {
-		up = fmt.Sprintf("%.0f mm above the underside", 1000*(x[0]-v.c.size[0].a))
-	}
-	if math.Abs(x[1]) > 5e-4 {
-		up += fmt.Sprintf(", %.0f mm across", 1000*math.Abs(x[1]))
-	}
-	if math.Abs(x[2]) > 5e-4 {
-		up += fmt.Sprintf(", %.0f mm along", 1000*math.Abs(x[2]))
-	}
-	return up
+	return false
 }
 
 // near tells whether two places are the same to a hundredth of a millimetre.

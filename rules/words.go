@@ -22,9 +22,10 @@ var words = map[string]string{
 	"stage lacking own": "The process has no stage {stage}, although this limit names this very product or its family, so it cannot be told.",
 	"faulty":            "The limit cannot be judged as it stands: {fault}.",
 
-	"within error met":    "; it is met by {by}, which is less than the error of the calculation ({error}), so it cannot be told.",
-	"within error missed": "; it is missed by {by}, which is less than the error of the calculation ({error}), so it cannot be told.",
-	"within error":        "; the error of the calculation ({error}) decides, so it cannot be told.",
+	"within error met":    "; the calculation turns on the very limit: it is met by {by}, and the error of the calculation is {error}, so it cannot be told.",
+	"within error missed": "; the calculation turns on the very limit: it is missed by {by}, and the error of the calculation is {error}, so it cannot be told.",
+	"within error":        "; the calculation turns on the very limit, and its error ({error}) decides, so it cannot be told.",
+	"within error until":  " The step {step} ends there by its Until: set Until a little beyond the limit.",
 	"bound":               "; but from {at} on the temperatures are only bounds ({bound}), so it cannot be told.",
 	"sparse":              "; but the readings there are {gap} apart and cannot show {time}, so it cannot be told.",
 
@@ -129,16 +130,43 @@ func lasting(s float64, up int) string {
 	return round(s/60, 1, up) + " min"
 }
 
-// degrees writes a temperature, rounded as asked.
-func degrees(c float64, up int) string { return round(c, 1, up) + " °C" }
+// inF tells whether the limit's own temperatures were typed in °F; its sentences then speak °F.
+func (l *Limit) inF() bool {
+	for _, column := range []string{"From", "To", "Reference temperature", "Allowance", "Clock starts"} {
+		if t := strings.TrimSpace(l.Typed[column]); strings.Contains(t, "°") {
+			return strings.HasSuffix(t, "F")
+		}
+	}
+	return false
+}
 
-// kelvinUp writes a difference, rounded up to two significant figures.
-func kelvinUp(k float64) string {
+// degrees writes a temperature (°C) in the unit in which the limit was typed, rounded as asked.
+func (l *Limit) degrees(c float64, up int) string {
+	if l.inF() {
+		return round(c*1.8+32, 1, up) + " °F"
+	}
+	return round(c, 1, up) + " °C"
+}
+
+// differenceUp writes a difference (K) in the unit in which the limit was typed, rounded up to two significant figures.
+func (l *Limit) differenceUp(k float64) string {
+	unit := " °C"
+	if l.inF() {
+		k, unit = k*1.8, " °F"
+	}
 	if math.Abs(k) < 1e-6 {
-		return "0 K"
+		return "0" + unit
 	}
 	d := max(0, 1-int(math.Floor(math.Log10(math.Abs(k)))))
-	return round(k, d, 1) + " K"
+	return round(k, d, 1) + unit
+}
+
+// decimalsOf is how many decimals a lethality is written with, here and in the documents.
+func decimalsOf(v float64, unit string) int {
+	if unit == "min" && v >= 1 {
+		return 1
+	}
+	return 2
 }
 
 // clockTime writes an instant from the start of the chain: 3 h 05 min.
