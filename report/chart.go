@@ -579,7 +579,7 @@ func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *mo
 			}
 		}
 	} else if at, ok := surfacePlace(&p.Product); ok && at != d.place {
-		course(say("line surface"), hist, at)
+		course(p.Product.Lies(at), hist, at)
 	}
 	if hist.MediumC != nil {
 		l := line{name: say("line medium")}

@@ -131,7 +131,8 @@ func tokens(s string) []string {
 	return out
 }
 
-// fitting is how many bytes of a word fit; at least one character.
+// fitting is how many bytes of a word fit; at least one character. A word is broken behind a _, - or / if there is one, so that
+// no file name is broken within its extension.
 func fitting(word string, width, size float64, bold bool) int {
 	n := 0
 	for i, r := range word {
@@ -140,6 +141,11 @@ func fitting(word string, width, size float64, bold bool) int {
 			break
 		}
 		n = end
+	}
+	if n < len(word) {
+		if k := strings.LastIndexAny(word[:n], "_-/"); k > 0 {
+			return k + 1
+		}
 	}
 	return n
 }

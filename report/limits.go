@@ -1,6 +1,7 @@
 package report
 
 import (
+	"slices"
 	"strings"
 
 	"slowpoint/rules"
@@ -216,7 +217,15 @@ func (h *Head) asks(l *rules.Limit) string {
 }
 
 // plainly is asks for whoever cooks: without words of theory.
-func (h *Head) plainly(l *rules.Limit) string {
+func (h *Head) plainly(f *rules.Finding) string {
+	l := f.Limit
+	if l.Table != nil {
+		for i := range l.Table.Rows {
+			if row := &l.Table.Rows[i]; !row.At.IsZero() && row.Typed != "" && slices.Contains(f.Cells, row.At) {
+				return say("plainly row", row.Typed, l.Table.Name)
+			}
+		}
+	}
 	if l.Kind == nil || l.Kind.Name != "lethality" {
 		return h.asks(l)
 	}

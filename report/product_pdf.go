@@ -78,7 +78,7 @@ func (x *sheet) headline() string {
 	room := x.head.room(f)
 	switch {
 	case f.Verdict == rules.Met && room != "":
-		return say("headline met", x.source(), f.Limit.Name, room) + x.lessRoom(f)
+		return say("headline met", x.source(), f.Limit.Name, room)
 	case f.Verdict == rules.NotMet && room != "":
 		return say("headline not met", f.Limit.Name, x.source(), room)
 	}
@@ -86,7 +86,11 @@ func (x *sheet) headline() string {
 }
 
 // lessRoom names a limit that has less room than the tightest, only because a step ends at a temperature near it; "" if there is none.
-func (x *sheet) lessRoom(tightest *rules.Finding) string {
+func (x *sheet) lessRoom() string {
+	tightest := x.decides.finding
+	if tightest == nil || tightest.Verdict != rules.Met {
+		return ""
+	}
 	for _, f := range x.order {
 		if f != tightest && f.Level == "must" && f.Verdict == rules.Met && f.Limit != nil && finite(tightest.MarginK) && finite(f.MarginK) && *f.MarginK < *tightest.MarginK {
 			if step := x.p.madeByUntil(f); step != "" {
@@ -150,7 +154,7 @@ func (x *sheet) operator() {
 		d.put(d.left, d.y-0.25*height(size), s, size, true)
 	}
 	if p.History != nil {
-		d.para(shorten(d.clean(say("operator process", p.Process, len(p.History.Spans), duration(p.History.EndS(), nearest))), frameWide, kitchen, false), style{size: kitchen, after: 2})
+		d.para(shorten(d.clean(say("operator process", p.Process, len(p.History.Spans), duration(x.decides.history.EndS(), nearest))), frameWide, kitchen, false), style{size: kitchen, after: 2})
 	}
 	x.verdictBox()
 	below := x.advice(true)
@@ -276,10 +280,13 @@ func (x *sheet) checks() []string {
 			place = x.decides.placeName
 		}
 		when := say("check any time")
+		if len(f.Limit.Stages) > 0 {
+			when = say("check throughout", stages(f.Limit))
+		}
 		if finite(f.AtS) {
 			when = say("check at", duration(*f.AtS, nearest), x.stepAt(f)+x.checkRun(f))
 		}
-		line := capped(x.clean(say("check", when, place, x.head.plainly(f.Limit))), frameWide-widthMM("1.  ", kitchen, false), kitchen, [...]int{5, 5, 2}[x.short])
+		line := capped(x.clean(say("check", when, place, x.head.plainly(f))), frameWide-widthMM("1.  ", kitchen, false), kitchen, [...]int{5, 5, 2}[x.short])
 		if !slices.Contains(out, line) {
 			out = append(out, line)
 		}
@@ -416,7 +423,7 @@ func (x *sheet) front() {
 	d, h, p := x.doc, x.head, x.p
 	d.page()
 	d.heading(say("front title", p.Product.Name), 0, 20)
-	d.para(say("front verdict", verdictWord(overall(p.Judgement.Verdict)), x.headline()), style{size: 11, bold: true, after: 1})
+	d.para(say("front verdict", verdictWord(overall(p.Judgement.Verdict)), x.headline()+x.lessRoom()), style{size: 11, bold: true, after: 1})
 	d.text(x.counts())
 	d.text(strings.Join(CautionText()[:2], " ") + say("see cautions"))
 	for _, g := range p.Judgement.Groups {
@@ -769,6 +776,9 @@ func (x *sheet) slowest() {
 	}
 	x.table([]col{{title: say("col step"), wide: 32, bold: true}, {title: say("col start"), wide: 23}, {title: say("col end"), wide: 23}, {title: say("col medium"), wide: 28},
 		{title: say("col coldest"), wide: 37}, {title: say("col hottest"), wide: 37}}, rows, small)
+	if x.p.Low != nil {
+		x.text(say("table usual"))
+	}
 	x.text(x.moves())
 }
 

@@ -185,7 +185,7 @@ func (p path) stay(ivs []interval, r region) spent {
 			case inB && !inA:
 				on, start = true, q.cross(i, r.edge(q.c[i]))
 			case !inA:
-				if A := q.c[i]; A <= r.lo && B >= r.hi || A >= r.hi && B <= r.lo {
+				if A := q.c[i]; A <= lo && B >= hi || A >= hi && B <= lo {
 					sp.add(q.cross(i, r.edge(A)), q.cross(i, r.edge(B)))
 				}
 			}

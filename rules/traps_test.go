@@ -50,6 +50,16 @@ func TestTraps(t *testing.T) {
 		{"B6 flat at From, more than", Limit{Kind: Hold, FromC: c(63), TimeS: min_(5), Counting: Total, Compare: MoreThan}, "cook 0-60", "0:20 10:63 40:63 60:20", NotMet, 0, math.NaN(), math.NaN()},
 		{"B7 130 °F is 54.44 °C, not 54", Limit{Kind: Hold, FromC: f(130), TimeS: min_(112), Counting: Total}, "cook 0-200", "0:54.2 200:54.2", NotMet, 0, math.NaN(), math.NaN()},
 		{"B7 165 °F is 73.89 °C, not 74", Limit{Kind: Hold, FromC: f(165), TimeS: c(0), Counting: Total}, "cook 0-60", "0:20 60:73.9", Met, 73.9, math.NaN(), math.NaN()},
+		{"B8 the same in its sense, frozen hard", Limit{Kind: StayBelow, ToC: c(-18)}, "store 0-60", "0:-25 60:-25", Met, -25, math.NaN(), math.NaN()},
+		{"B8 the same in its sense, thawed", Limit{Kind: StayBelow, ToC: c(-18)}, "store 0-60", "0:-25 60:-10", NotMet, -10, math.NaN(), math.NaN()},
+		{"B13 reheating: 41 °F to 165 °F in 2 h (FDA Food Code 2022 3-403.11(D) with (A))", Limit{Kind: Band, FromC: f(41), ToC: f(165), TimeS: min_(120), Counting: Total}, "reheat 0-150", "0:5 100:57.2222222222 130:73.8888888889 150:80", NotMet, 130, 0, 130},
+		{"B13 reheating: 41 °F to 135 °F in 2 h (FDA Food Code 2022 3-403.11(D) with (C))", Limit{Kind: Band, FromC: f(41), ToC: f(135), TimeS: min_(120), Counting: Total}, "reheat 0-150", "0:5 100:57.2222222222 130:73.8888888889 150:80", Met, 100, 0, 100},
+		{"B14 roast at 130 °F, 121 min (older editions of FDA 3-401.11(B))", Limit{Kind: Hold, FromC: f(130), TimeS: min_(121), Counting: Total}, "cook 0-200", "0:54.5 115:54.5 115.0001:20 200:20", NotMet, 115, 0, 115},
+		{"B14 roast at 130 °F, 112 min (later editions of FDA 3-401.11(B))", Limit{Kind: Hold, FromC: f(130), TimeS: min_(112), Counting: Total}, "cook 0-200", "0:54.5 115:54.5 115.0001:20 200:20", Met, 115, 0, 115},
+		{"B14 poultry at 165 °F, 15 s (FDA Food Code 2013 3-401.11(A)(3))", Limit{Kind: Hold, FromC: f(165), TimeS: c(15), Counting: Total}, "cook 0-60", "0:20 29.9999:20 30:74 30.1:74 30.1001:20 60:20", NotMet, 0.1, 30, 30.1},
+		{"B14 poultry at 165 °F, reached once (FDA Food Code 2017 3-401.11(A)(3), less than 1 s)", Limit{Kind: Hold, FromC: f(165), TimeS: c(0), Counting: Total}, "cook 0-60", "0:20 29.9999:20 30:74 30.1:74 30.1001:20 60:20", Met, 74, math.NaN(), math.NaN()},
+		{"B15 fish at −20 °C, 24 h (EU, Regulation 853/2004)", Limit{Kind: Hold, ToC: c(-20), TimeS: min_(24 * 60), Counting: Total}, "store 0-9000", "0:-20 6000:-20 6001:0 9000:0", Met, 6000, 0, 6000},
+		{"B15 fish at −20 °C, 168 h (FDA Food Code 3-402.11)", Limit{Kind: Hold, ToC: c(-20), TimeS: min_(168 * 60), Counting: Total}, "store 0-9000", "0:-20 6000:-20 6001:0 9000:0", NotMet, 6000, 0, 6000},
 		{"B10 time between rows is not interpolated", Limit{Kind: HoldTable, Counting: Total, Table: fahrenheit(141, 9, 142, 8)}, "cook 0-60", "0:60.6 8.5:60.6 8.500001:20 60:20", NotMet, 8.5 / 9, 0, 8.5},
 		{"B11 z 7.5 at 65 °C", Limit{Kind: Lethality, ReferenceC: c(70), ZK: c(7.5), TimeS: min_(2)}, "cook 0-10", "0:65 10:65", Met, 2.154434690, 0, 10},
 		{"B11 z 6 at 65 °C", Limit{Kind: Lethality, ReferenceC: c(70), ZK: c(6), TimeS: min_(2)}, "cook 0-10", "0:65 10:65", NotMet, 1.467799268, 0, 10},
@@ -75,6 +85,69 @@ func TestTraps(t *testing.T) {
 				}
 				closeTo(t, what, pair.got, pair.want, 1e-3)
 			}
+		})
+	}
+}
+
+// TestPrintedSign: the annexure of South Africa's R.638 of 2018 prints "≥ −18 °C" for frozen food; a sign that is copied and not
+// understood is refused, never judged (B8).
+func TestPrintedSign(t *testing.T) {
+	l := Limit{Name: "frozen", Applies: Applies{All: true}, Kind: StayBelow, ToC: c(-18), Compare: AtLeast}
+	if fs := l.Faults(); len(fs) != 1 || fs[0].Column != "Compare" {
+		t.Errorf("faults %+v", fs)
+	}
+	for _, course := range []string{"0:-25 60:-25", "0:-25 60:-10"} {
+		if j := Judge([]Limit{l}, nil, Subject{Product: "peas", History: record(t, "store 0-60", course)}); j.Verdict != CannotTell {
+			t.Errorf("%s: %v", course, j.Verdict)
+		}
+	}
+}
+
+// TestWhichPlace: a come-up starts at the surface and ends at the core, a warmest portion is the surface on warming, and nothing is
+// ever averaged (B12).
+func TestWhichPlace(t *testing.T) {
+	h := records(t, "reheat 0-200", trace(t, "centre", 0, "0:4 60:5 190:73.8888888889 200:76"), trace(t, "surface", 30, "0:5 100:73.8888888889 200:90"))
+	got := one(t, Limit{Kind: Band, FromC: f(41), ToC: f(165), TimeS: min_(120), Counting: Total}, h)
+	if got.Verdict != NotMet || got.PlaceName != "centre" {
+		t.Errorf("come-up: %v at %s", got.Verdict, got.PlaceName)
+	}
+	closeTo(t, "come-up", got.Value, 130, 1e-6)
+	h = records(t, "store 0-100", trace(t, "centre", 0, "0:5 100:12"), trace(t, "surface", 30, "0:5 100:22"))
+	if got := one(t, Limit{Kind: StayBelow, ToC: f(70)}, h); got.Verdict != NotMet || got.PlaceName != "surface" || *got.Value != 22 {
+		t.Errorf("warmest portion: %v at %s: %v", got.Verdict, got.PlaceName, *got.Value)
+	}
+	h = records(t, "cook 0-60", trace(t, "centre", 0, "0:5 60:70"), trace(t, "surface", 30, "0:5 60:82")) // their mean is 76
+	if got := one(t, Limit{Kind: Hold, FromC: c(75), TimeS: c(0), Counting: Total}, h); got.Verdict != NotMet || *got.Value != 70 {
+		t.Errorf("worst, not mean: %v: %v", got.Verdict, *got.Value)
+	}
+}
+
+// TestOverlappingRules: food that cools for five hours meets a rule of six hours and misses one of four; the user says which
+// governs, by a group or a level, and the other is shown all the same (B19).
+func TestOverlappingRules(t *testing.T) {
+	six := Limit{Name: "cooling", Applies: Applies{All: true}, Kind: CoolWithin, FromC: c(60), ToC: c(5), TimeS: min_(360), Clock: crossing}
+	four := Limit{Name: "2 h/4 h", Applies: Applies{All: true}, Kind: Band, FromC: c(5), ToC: c(60), TimeS: min_(240), Counting: Total}
+	h := record(t, "cook 0-60, cool 60-400", "0:60 60:70 70:60 370:5 400:3")
+	for _, x := range []struct {
+		name    string
+		group   string
+		advice  bool
+		verdict Verdict
+		level   string // of the rule of four hours
+	}{
+		{"both must be met", "", false, NotMet, "must"},
+		{"the cooling rule governs, by a group", "time", false, Met, "alternative"},
+		{"the cooling rule governs, by the level", "", true, Met, "advice"},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			a, b := six, four
+			a.Group, b.Group, b.Advice = x.group, x.group, x.advice
+			j := Judge([]Limit{a, b}, []Group{{Name: "time", AnyOf: true}}, Subject{Product: "rice", History: h})
+			if j.Verdict != x.verdict || len(j.Findings) != 2 || j.Findings[0].Verdict != Met || j.Findings[1].Verdict != NotMet || j.Findings[1].Level != x.level {
+				t.Errorf("%v, %+v", j.Verdict, j.Findings)
+			}
+			closeTo(t, "cooling", j.Findings[0].Value, 300, 1e-6)
+			closeTo(t, "in the band", j.Findings[1].Value, 300, 1e-6)
 		})
 	}
 }
