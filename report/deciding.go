@@ -42,26 +42,69 @@ func (p *Product) madeByUntil(f *rules.Finding) string {
 	if h == nil || f.Limit == nil || f.Verdict != rules.Met || !finite(f.MarginK) {
 		return ""
 	}
+	own, heats := aim(f.Limit)
 	const near = 0.3 // K: the slowest place ends the step, and the limit may be about another
-	for _, own := range []*float64{f.Limit.FromC, f.Limit.ToC} {
-		for _, sp := range h.Spans {
-			if own != nil && sp.Step != nil && sp.Step.UntilC != nil && sp.Reached != nil && *sp.Reached &&
-				math.Abs(*f.MarginK-math.Abs(*own-*sp.Step.UntilC)) < near {
-				return sp.Step.Name
-			}
+	for _, sp := range h.Spans {
+		if own == nil || sp.Step == nil || sp.Step.UntilC == nil || sp.Step.Stage == nil || sp.Step.Stage.Heats != heats || sp.Reached == nil || !*sp.Reached {
+			continue
+		}
+		beyond := *sp.Step.UntilC - *own
+		if !heats {
+			beyond = -beyond
+		}
+		if beyond > 0 && math.Abs(*f.MarginK-beyond) < near {
+			return sp.Step.Name
 		}
 	}
 	return ""
 }
 
-// tightness is that of a finding, without a margin that the end of a step makes: the room in time counts then, or none.
+// aim is the temperature that a limit wants food brought to or kept at, °C, and whether by heating; nil where it wants none.
+func aim(l *rules.Limit) (c *float64, heats bool) {
+	switch l.Kind {
+	case rules.CoolWithin:
+		return l.ToC, false
+	case rules.HeatWithin:
+		return l.ToC, true
+	case rules.Hold, rules.StayAbove, rules.StayBelow, rules.ByTheEnd:
+		if l.Kind == rules.StayBelow && l.ToC == nil {
+			return l.FromC, false
+		}
+		if l.Kind == rules.StayAbove && l.FromC == nil {
+			return l.ToC, true
+		}
+		if l.ToC != nil {
+			return l.ToC, false
+		}
+		return l.FromC, true
+	}
+	return nil, false
+}
+
+// tightness is that of a finding, without a room in K that says nothing of the food: one that the end of a step makes, and one of a
+// limited time of which nothing was used; the room in time counts then, or none. The length of a step was typed: it has none.
 func (p *Product) tightness(f *rules.Finding) float64 {
-	if p.madeByUntil(f) == "" {
+	if f.Verdict == rules.Met && f.Limit != nil && f.Limit.Kind == rules.Duration {
+		return math.Inf(1)
+	}
+	unused := f.Verdict == rules.Met && f.Unit == "min" && !needsMore(f) && finite(f.Value) && *f.Value == 0
+	if !unused && p.madeByUntil(f) == "" {
 		return tightness(f)
 	}
 	g := *f
 	g.MarginK = nil
 	return tightness(&g)
+}
+
+// telling is a finding with the room that tells how tight it is: without the room in K that the end of a step makes, where there is
+// one in time.
+func (p *Product) telling(f *rules.Finding) *rules.Finding {
+	if !finite(f.MarginS) || p.madeByUntil(f) == "" {
+		return f
+	}
+	g := *f
+	g.MarginK = nil
+	return &g
 }
 
 // weight orders verdicts, the worst first.
@@ -140,7 +183,8 @@ func (p *Product) Row() Row {
 	r := Row{Product: p.Product.Name, Process: p.Process, Verdict: p.Judgement.Verdict, Why: p.Judgement.Why, tight: math.Inf(1)}
 	if d := p.decides(); d.finding != nil {
 		f := d.finding
-		r.MarginK, r.MarginS, r.tight = f.MarginK, f.MarginS, p.tightness(f)
+		g := p.telling(f)
+		r.MarginK, r.MarginS, r.tight = g.MarginK, g.MarginS, p.tightness(f)
 		if f.Limit != nil {
 			r.Deciding = f.Limit.Name
 		}

@@ -75,7 +75,7 @@ func (x *sheet) headline() string {
 	case f.Verdict == rules.CannotTell:
 		return say("headline cannot tell", f.Limit.Name, f.Why)
 	}
-	room := x.head.room(f)
+	room := x.head.room(x.p.telling(f))
 	switch {
 	case f.Verdict == rules.Met && room != "":
 		return say("headline met", x.source(), f.Limit.Name, room)
@@ -92,7 +92,8 @@ func (x *sheet) lessRoom() string {
 		return ""
 	}
 	for _, f := range x.order {
-		if f != tightest && f.Level == "must" && f.Verdict == rules.Met && f.Limit != nil && finite(tightest.MarginK) && finite(f.MarginK) && *f.MarginK < *tightest.MarginK {
+		if f != tightest && f.Level == "must" && f.Verdict == rules.Met && f.Limit != nil && finite(f.MarginK) &&
+			!(finite(tightest.MarginK) && *f.MarginK >= *tightest.MarginK) {
 			if step := x.p.madeByUntil(f); step != "" {
 				return say("headline until", f.Limit.Name, x.head.difference(*f.MarginK, down), step)
 			}
@@ -171,16 +172,18 @@ func (x *sheet) verdictBox() {
 	d := x.doc
 	word := verdictWord(overall(x.p.Judgement.Verdict))
 	wide := widthMM(word, 20, true) + 8
-	lines := wrap(d.clean(x.headline()), frameWide-wide-4, 12, false)
+	size := 12.0
+	lines := wrap(d.clean(x.headline()), frameWide-wide-4, size, false)
 	if len(lines) > 5 {
-		lines = append(lines[:4], shorten(strings.Join(lines[4:], " "), frameWide-wide-4, 12, false))
+		size = kitchen
+		lines = wrap(capped(d.clean(x.headline()), frameWide-wide-4, size, 8), frameWide-wide-4, size, false)
 	}
-	h := max(float64(len(lines))*height(12)+5, 14)
+	h := max(float64(len(lines))*height(size)+5, 14)
 	d.frame(d.left, d.y, frameWide, h, 2)
 	d.put(d.left+4, d.y+h/2+2.5, word, 20, true)
-	y := d.y + (h-float64(len(lines))*height(12))/2
+	y := d.y + (h-float64(len(lines))*height(size))/2
 	for i, s := range lines {
-		d.put(d.left+wide, y+(float64(i+1)-0.28)*height(12), s, 12, false)
+		d.put(d.left+wide, y+(float64(i+1)-0.28)*height(size), s, size, false)
 	}
 	d.y += h + 3
 }

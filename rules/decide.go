@@ -369,7 +369,7 @@ func (v *view) weigh(f *Finding, o outcome, q question, cs []candidate) (tail st
 		if word != "" {
 			f.Verdict = CannotTell
 			h := holes{"error": v.l.differenceUp(v.errK)}
-			if f.MarginK == nil || math.Abs(*f.MarginK) > v.errK*1.5 {
+			if f.MarginK == nil || math.Abs(*f.MarginK) > v.errK*1.5 || math.Abs(*f.MarginK) < 1e-6 {
 				word = "within error"
 			} else {
 				h["by"] = v.l.differenceUp(math.Abs(*f.MarginK))

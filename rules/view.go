@@ -438,6 +438,9 @@ func (v *view) scope() scope {
 
 // placeName says where a place is, in the one wording that the documents use.
 func (v *view) placeName(p model.Place) string {
+	if v.h.Product != nil && v.h.Product.Shape == model.Stirred {
+		return v.h.Product.Where(p)
+	}
 	for _, pt := range v.h.Points {
 		if near(pt.Place, p) {
 			return pt.Name
