@@ -165,6 +165,9 @@ func (h *Head) quantity(f *rules.Finding, v *float64, asked bool) string {
 	case "log10":
 		return plain(*v, 2, r) + " log10"
 	case "1":
+		if asked || *v == 0 || *v == 1 { // a row that is met at once has no time
+			return plain(*v, 2, r)
+		}
 		return say("times of row", plain(*v, 2, r))
 	}
 	return strings.TrimSpace(plain(*v, 3, r) + " " + f.Unit)
