@@ -76,12 +76,18 @@ func (h *Head) first(inC, inF string) string {
 	return inC + " (" + inF + ")"
 }
 
+// roomShown is the longest room that is written out, s: 1000 h.
+const roomShown = 3.6e6
+
 // duration writes seconds as a person says them: "1 h 35 min", "3 h 05 min", "4 min 30 s", "2.5 s".
 // From an hour on it is rounded to the minute, below to the second, below ten seconds to a tenth.
 func duration(s float64, r rounding) string {
 	if s < 0 {
 		back := map[rounding]rounding{nearest: nearest, down: up, up: down}[r]
 		return "−" + duration(-s, back)
+	}
+	if r == down && s >= roomShown { // room beyond that says nothing, and lethality far above its need makes room without end
+		return "over 1000 h"
 	}
 	switch whole := r.round(s, 0); {
 	case s < 10:

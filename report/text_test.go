@@ -115,6 +115,8 @@ func TestDuration(t *testing.T) {
 		{"up", 5701, up, "1 h 36 min"},
 		{"noise of the last digits goes neither way", 7200.0000000001, up, "2 h"},
 		{"what is lacking, rounded down, grows", -5701, down, "−1 h 36 min"},
+		{"room without end", 5e8, down, "over 1000 h"},
+		{"a long step is written out", 3.7e6, nearest, "1027 h 47 min"},
 		{"just under an hour", 3599.7, nearest, "1 h"},
 		{"just under a minute", 59.9, up, "1 min"},
 	} {
