@@ -35,8 +35,8 @@ func judgeCool(v *view) Finding {
 
 // clockStart finds when the clock of a window starts for a place by a fall: at its first fall to the crossing temperature after
 // its highest temperature. ok is false where the window does not count; open tells that the fall is still to come when the
-// chain ends in the cold. errK starts it earlier.
-func (v *view) clockStart(p path, w window, errK float64) (start float64, ok, open bool) {
+// chain ends in the cold. The error starts it earlier.
+func (v *view) clockStart(p path, w window, t tilt) (start float64, ok, open bool) {
 	if !math.IsNaN(w.clock) {
 		return w.clock, true, false
 	}
@@ -48,10 +48,10 @@ func (v *view) clockStart(p path, w window, errK float64) (start float64, ok, op
 			top = i
 		}
 	}
-	if q.c[top] <= from+sameK {
+	if q.c[top] <= from+sameK && !(t.edge && q.c[top] >= from-t.errK-sameK) {
 		return 0, false, false
 	}
-	level := from + errK
+	level := from + t.errK
 	if q.c[top] <= level {
 		return q.t[top], true, false
 	}
@@ -84,7 +84,7 @@ func (v *view) endsCold(w window) bool {
 // coolWindow judges one window at one place.
 func (v *view) coolWindow(p path, w window, t tilt) outcome {
 	l := v.l
-	start, ok, open := v.clockStart(p, w, t.errK)
+	start, ok, open := v.clockStart(p, w, t)
 	if open {
 		o := none(CannotTell, "cool not fallen")
 		o.holes = holes{"start": l.startWords()}
@@ -189,7 +189,7 @@ func (v *view) stageNames() string {
 
 // coolRoom is how far To could be lowered in one window, K: To less the highest temperature from the allowed time on.
 func (v *view) coolRoom(p path, w window) float64 {
-	start, ok, _ := v.clockStart(p, w, 0)
+	start, ok, _ := v.clockStart(p, w, tilt{})
 	if !ok {
 		return math.NaN()
 	}

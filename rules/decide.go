@@ -13,6 +13,7 @@ type tilt struct {
 	errK float64 // the error band: every temperature of the limit moves, each to its own unfavourable side
 	ownK float64 // the limit's own temperature alone moves: what the margin asks
 	rank bool    // only verdict, value and badness are wanted: no words
+	edge bool    // a place whose highest temperature is that at which the clock starts, within errK, counts: the unfavourable reading
 }
 
 // outcome is what a limit says of one place.
@@ -96,9 +97,86 @@ func (v *view) judgePlaces(q question) Finding {
 	}
 	if f.Verdict != NotApplicable {
 		f.MarginK = finite(v.room(s, q, cs))
+	} else if c, tail, ok := v.mayApply(q, cs); ok {
+		f = v.finding(c.nominal, q)
+		f.Verdict = CannotTell
+		f.PlaceName = s.name
+		if s.medium == nil {
+			f.Place = &c.place
+			if s.name == "" || s.surfaceOnly {
+				f.PlaceName = v.placeName(c.place)
+			}
+		}
+		f.Why = v.sentence(&f, c.nominal, tail)
+		return f
+	} else if why := v.neverWarm(s); why != "" {
+		f.Why = why
+		return f
 	}
 	f.Why = v.sentence(&f, o, v.weigh(&f, o, q, cs))
 	return f
+}
+
+// unfavourable is the tilt of the unfavourable end of the error band.
+func (v *view) unfavourable() tilt { return tilt{errK: v.errK, edge: true} }
+
+// mayApply looks at a limit that applies to no place as calculated, but to one at the unfavourable end: a place whose highest
+// temperature is that at which the clock starts. It gives what is not met there, and why that cannot be told.
+func (v *view) mayApply(q question, cs []candidate) (worst candidate, tail string, ok bool) {
+	if !v.l.clocked() {
+		return worst, "", false
+	}
+	worst = cs[0]
+	worst.nominal = q.measure(worst.path, v.unfavourable())
+	for _, c := range cs[1:] {
+		if o := q.measure(c.path, v.unfavourable()); worse(o, worst.nominal) {
+			worst, worst.nominal = c, o
+		}
+	}
+	if verdict := worst.nominal.verdict; verdict == Met || verdict == NotApplicable {
+		return worst, "", false
+	}
+	_, top := worst.path.mostOf(v.spans(), 1)
+	h := holes{"top": v.l.degrees(top, 1), "start": v.l.startWords(), "error": v.l.differenceUp(v.errK)}
+	if math.Abs(top-v.l.crossedC()) <= sameK {
+		return worst, say("clock at the edge", h), true
+	}
+	return worst, say("clock within error", h), true
+}
+
+// spans are the stretches of the windows.
+func (v *view) spans() []interval {
+	var ivs []interval
+	for _, w := range v.windows() {
+		ivs = append(ivs, w.interval)
+	}
+	return ivs
+}
+
+// neverWarm says how warm the places were for which the clock never started; "" where the clock is no crossing.
+func (v *view) neverWarm(s scope) string {
+	ivs := v.spans()
+	if !v.l.clocked() || len(ivs) == 0 {
+		return ""
+	}
+	top := math.Inf(-1)
+	take := func(p path) {
+		_, c := p.mostOf(ivs, 1)
+		top = math.Max(top, c)
+	}
+	switch {
+	case s.medium != nil:
+		take(*s.medium)
+	case s.one != nil:
+		take(v.c.path(*s.one))
+	}
+	for _, i := range s.spots {
+		take(path{t: v.c.times, c: v.c.rows[i]})
+	}
+	if math.IsInf(top, 0) || math.IsNaN(top) {
+		return ""
+	}
+	return say("never above", holes{"start": v.l.startWords(), "top": v.l.degrees(top, 1)})
 }
 
 // candidates are the places whose exact courses decide: the least favourable spots of the scan and what lies beside them.
@@ -110,9 +188,9 @@ func (v *view) candidates(s scope, q question) []candidate {
 		p := v.c.path(*s.one)
 		return []candidate{{place: *s.one, path: p, nominal: q.measure(p, tilt{})}}
 	}
-	picks := v.pick(s.spots, q, 0)
-	if v.errK > 0.05 {
-		picks = append(picks, v.pick(s.spots, q, v.errK)...)
+	picks := v.pick(s.spots, q, tilt{})
+	if v.errK > 0.05 || v.patchy && v.l.clocked() {
+		picks = append(picks, v.pick(s.spots, q, v.unfavourable())...)
 	}
 	var cs []candidate
 	add := func(p model.Place, surface bool) {
@@ -197,8 +275,8 @@ func (v *view) inside(q question, edge, to model.Place) model.Place {
 func (l *Limit) clocked() bool { return l.Clock.Crossing || l.Clock.AtC != nil }
 
 // pick ranks spots by their scanned courses and returns the worst, and the second worst where its verdict differs.
-func (v *view) pick(spots []int, q question, errK float64) []int {
-	t := tilt{errK: errK, rank: true}
+func (v *view) pick(spots []int, q question, t tilt) []int {
+	t.rank = true
 	if v.c.roughly(); v.c.rough != nil && len(spots) >= manySpots {
 		spots = v.shortlist(spots, q, t)
 	}
@@ -346,11 +424,11 @@ func roomBy(m measure, p path, least float64) float64 {
 	return lo
 }
 
-// worstAt is the worst outcome over the candidates for a given error.
-func worstAt(q question, cs []candidate, errK float64) outcome {
-	o := q.measure(cs[0].path, tilt{errK: errK})
+// worstAt is the worst outcome over the candidates for a given tilt.
+func worstAt(q question, cs []candidate, t tilt) outcome {
+	o := q.measure(cs[0].path, t)
 	for _, c := range cs[1:] {
-		if p := q.measure(c.path, tilt{errK: errK}); worse(p, o) {
+		if p := q.measure(c.path, t); worse(p, o) {
 			o = p
 		}
 	}
@@ -359,11 +437,15 @@ func worstAt(q question, cs []candidate, errK float64) outcome {
 
 // weigh applies the error band and the bound of the history to the verdict, and says so in the tail of the sentence.
 func (v *view) weigh(f *Finding, o outcome, q question, cs []candidate) (tail string) {
-	if v.errK > 0 {
+	if v.errK > 0 || v.l.clocked() {
 		word := ""
-		if o.verdict == Met && worstAt(q, cs, v.errK).verdict != Met {
+		if o.verdict == Met && worstAt(q, cs, v.unfavourable()).verdict != Met {
 			word = "within error met"
-		} else if o.verdict == NotMet && worstAt(q, cs, -v.errK).verdict == Met {
+			if v.errK == 0 {
+				f.Verdict = CannotTell
+				return say("clock elsewhere", holes{"start": v.l.startWords()})
+			}
+		} else if o.verdict == NotMet && v.errK > 0 && worstAt(q, cs, tilt{errK: -v.errK}).verdict == Met {
 			word = "within error missed"
 		}
 		if word != "" {

@@ -16,7 +16,7 @@ func judgeEnd(v *view) Finding {
 		level = *l.FromC
 	}
 	q := question{unit: "°C", need: level, warm: sign > 0, adds: true}
-	instants := func(p path, errK float64) []float64 {
+	instants := func(p path, t tilt) []float64 {
 		if l.TimeS == nil {
 			var ts []float64
 			for _, iv := range v.stages {
@@ -24,11 +24,11 @@ func judgeEnd(v *view) Finding {
 			}
 			return ts
 		}
-		return v.due(p, errK)
+		return v.due(p, t)
 	}
 	q.room = func(p path) float64 {
 		least := math.NaN()
-		for _, t := range instants(p, 0) {
+		for _, t := range instants(p, tilt{}) {
 			if t > v.c.end+sameS {
 				continue
 			}
@@ -41,7 +41,7 @@ func judgeEnd(v *view) Finding {
 	q.measure = func(p path, t tilt) outcome {
 		worst := none(NotApplicable, "end nowhere")
 		worst.bad = math.Inf(-1)
-		for _, at := range instants(p, t.errK) {
+		for _, at := range instants(p, t) {
 			o := none(NotMet, word)
 			o.at = at
 			if l.TimeS != nil {
@@ -72,10 +72,10 @@ func judgeEnd(v *view) Finding {
 }
 
 // due are the instants Time after the clock of each window.
-func (v *view) due(p path, errK float64) []float64 {
+func (v *view) due(p path, t tilt) []float64 {
 	var ts []float64
 	for _, w := range v.windows() {
-		if start, ok, open := v.clockStart(p, w, errK); ok {
+		if start, ok, open := v.clockStart(p, w, t); ok {
 			ts = append(ts, start+*v.l.TimeS)
 		} else if open {
 			ts = append(ts, v.c.end+*v.l.TimeS)

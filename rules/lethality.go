@@ -33,7 +33,13 @@ func judgeLethality(v *view) Finding {
 		k := v.killer(t)
 		best, which := -1.0, 0
 		for i, ivs := range heats {
-			if f := k.over(p, ivs); f > best {
+			f := k.over(p, ivs)
+			if math.IsNaN(f) || math.IsInf(f, 0) {
+				o := none(CannotTell, "lethality endless")
+				o.slow = true
+				return o
+			}
+			if f > best {
 				best, which = f, i
 			}
 		}

@@ -7,22 +7,42 @@ import (
 
 // Stated is a condition that the user answers.
 var Stated = &Kind{Name: "stated", May: []string{"Answer", "Stage"},
-	Help: "only you can answer it: yes, no, or yes with words; blank cannot be told", judge: judgeStated}
+	Help: "only you can answer it: yes, no, or yes with a comma and a remark; blank cannot be told", judge: judgeStated}
 
 func judgeStated(v *view) Finding {
 	a := strings.TrimSpace(v.l.Answer)
 	h := holes{"answer": strings.TrimRight(a, ".")}
-	first := strings.ToLower(a)
+	first, rest := strings.ToLower(a), ""
 	if i := strings.IndexFunc(first, func(r rune) bool { return !unicode.IsLetter(r) }); i >= 0 {
-		first = first[:i]
+		first, rest = first[:i], first[i:]
 	}
 	switch {
 	case a == "":
 		return v.blank(CannotTell, say("stated blank", h))
-	case first == "yes":
+	case first == "yes" && plainYes(rest):
 		return v.blank(Met, say("stated yes", h))
 	case first == "no":
 		return v.blank(NotMet, say("stated no", h))
 	}
 	return v.blank(CannotTell, say("stated text", h))
+}
+
+// doubts are words in an answer that may take back its yes.
+var doubts = map[string]bool{"no": true, "not": true, "never": true, "unless": true, "cannot": true, "except": true, "without": true}
+
+// plainYes tells whether what follows a yes (in lower case) leaves it a yes: nothing, or a mark and words that take nothing back.
+func plainYes(rest string) bool {
+	rest = strings.TrimSpace(rest)
+	if rest == "" {
+		return true
+	}
+	if !strings.ContainsAny(rest[:1], ",-:;.") && !strings.HasPrefix(rest, "–") && !strings.HasPrefix(rest, "—") || strings.Contains(rest, "?") {
+		return false
+	}
+	for _, w := range strings.FieldsFunc(rest, func(r rune) bool { return !unicode.IsLetter(r) && r != '\'' && r != '’' }) {
+		if doubts[w] || strings.HasSuffix(w, "n't") || strings.HasSuffix(w, "n’t") {
+			return false
+		}
+	}
+	return true
 }

@@ -1,0 +1,86 @@
+package rules
+
+import (
+	"math"
+	"strings"
+	"testing"
+
+	"slowpoint/model"
+)
+
+// TestStatedAnswers takes yes for a yes only where nothing takes it back.
+func TestStatedAnswers(t *testing.T) {
+	h := record(t, "cook 0-60", "0:5 60:80")
+	for _, x := range []struct {
+		answer string
+		want   Verdict
+	}{
+		{"yes", Met}, {" Yes. ", Met}, {"yes, sealed bags", Met}, {"yes – seen by the cook", Met}, {"yes: form 4", Met}, {"yes; nothing else is open", Met},
+		{"yes, but not on Sundays", CannotTell}, {"yes, unless it is busy", CannotTell}, {"yes?", CannotTell}, {"yes, never checked", CannotTell},
+		{"yes and no", CannotTell}, {"yes mostly", CannotTell}, {"yes, isn't it", CannotTell}, {"yes, in no case", CannotTell}, {"yesterday", CannotTell},
+		{"no", NotMet}, {"No, never", NotMet}, {"", CannotTell}, {"perhaps", CannotTell},
+	} {
+		t.Run(x.answer, func(t *testing.T) {
+			f := one(t, Limit{Kind: Stated, Answer: x.answer}, h)
+			if f.Verdict != x.want {
+				t.Errorf("%v, want %v: %s", f.Verdict, x.want, f.Why)
+			}
+			if a := strings.Trim(x.answer, " ."); !strings.Contains(f.Why, a) {
+				t.Errorf("the answer is not printed: %s", f.Why)
+			}
+		})
+	}
+}
+
+// TestStartsExactlyAtFrom counts a fall from exactly the temperature that starts the clock as the unfavourable reading.
+func TestStartsExactlyAtFrom(t *testing.T) {
+	limit := func(from, minutes float64) Limit {
+		return Limit{Kind: CoolWithin, FromC: c(from), ToC: c(21), TimeS: min_(minutes), Clock: crossing}
+	}
+	for _, x := range []struct {
+		name, course string
+		l            Limit
+		want         Verdict
+		why          string
+	}{
+		{"exactly at From, too slow", "0:60 300:20", limit(60, 120), CannotTell, "exactly"},
+		{"exactly at From, in time", "0:60 100:20", limit(60, 120), NotApplicable, "reached 60"},
+		{"below From", "0:59.9 300:20", limit(60, 120), NotApplicable, "Nothing was above 60 °C: the warmest place judged reached 59.9 °C"},
+		{"Fahrenheit typed as Celsius", "0:75 300:20", limit(135, 120), NotApplicable, "Nothing was above 135 °C: the warmest place judged reached 75 °C"},
+		{"above From", "0:60.1 300:20", limit(60, 120), NotMet, "allowed"},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			f := one(t, x.l, record(t, "cool 0-300", x.course+map[bool]string{true: " 300:20"}[strings.HasPrefix(x.course, "0:60 100")]))
+			if f.Verdict != x.want || !strings.Contains(f.Why, x.why) {
+				t.Errorf("%v: %s", f.Verdict, f.Why)
+			}
+		})
+	}
+	t.Run("within the error of From", func(t *testing.T) {
+		h := record(t, "cool 0-300", "0:59.9 300:20")
+		h.ErrorK = 0.2
+		if f := one(t, limit(60, 120), h); f.Verdict != CannotTell || !strings.Contains(f.Why, "the error of the calculation is 0.2") {
+			t.Errorf("%v: %s", f.Verdict, f.Why)
+		}
+	})
+	t.Run("another place exactly at From", func(t *testing.T) {
+		h := records(t, "cool 0-300", trace(t, "a", 0, "0:70 60:10 300:5"), trace(t, "b", 5, "0:60 250:30 300:20"))
+		if f := one(t, limit(60, 120), h); f.Verdict != CannotTell || !strings.Contains(f.Why, "another place") {
+			t.Errorf("%v: %s", f.Verdict, f.Why)
+		}
+	})
+}
+
+// TestEndlessLethality never calls met what is no number.
+func TestEndlessLethality(t *testing.T) {
+	h := record(t, "cook 0-60", "0:5 60:80")
+	for _, z := range []float64{1e-3, 1e-6, 0.01} {
+		f := one(t, Limit{Kind: Lethality, ReferenceC: c(60), ZK: c(z), TimeS: min_(2)}, h)
+		if f.Verdict != CannotTell || f.Value != nil && math.IsInf(*f.Value, 0) {
+			t.Errorf("z %g: %v: %s", z, f.Verdict, f.Why)
+		}
+	}
+	if f := one(t, Limit{Kind: Lethality, ReferenceC: c(60), ZK: c(7), TimeS: min_(2), Stages: st(model.Cook)}, h); f.Verdict != Met {
+		t.Errorf("a usual z: %v: %s", f.Verdict, f.Why)
+	}
+}
