@@ -275,7 +275,7 @@ func (h *History) Scan() *Scan {
 // stepTimes gives instants between two ends: dense after the change at from, then evenly, with the knots of the media.
 func stepTimes(from, to, settle float64, knots []float64) []float64 {
 	length := to - from
-	wide := length / 48
+	wide := math.Max(length/48, settle/4)
 	times := []float64{from}
 	for tau, d := settle/16, settle/16; tau < length; tau += d {
 		times = append(times, from+tau)

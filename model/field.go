@@ -8,6 +8,9 @@ import (
 // A field is the temperature of every place in the food over the whole chain, in one of two forms: tensor, or product of axes.
 // Places are given in the body's own coordinates, one an axis: 0…1 from the centre to the face, or -1…1 between two faces.
 type field interface {
+	// run appends a step; pop takes the last one back.
+	run(cs *chainStep)
+	pop()
 	// course fills out with the temperatures of a place at rising times.
 	course(x coord, times, out []float64)
 	// at makes the snapshot of one instant; it is valid until the next call.
@@ -134,6 +137,16 @@ func (f *tensor) run(cs *chainStep) {
 	}
 	f.steps = append(f.steps, st)
 	f.segments(cs, st, f.carry(st))
+}
+
+// pop takes the last step back.
+func (f *tensor) pop() {
+	last := f.steps[len(f.steps)-1]
+	f.steps = f.steps[:len(f.steps)-1]
+	for len(f.segs) > 0 && f.segs[len(f.segs)-1].step == last {
+		f.segs = f.segs[:len(f.segs)-1]
+	}
+	f.now.of, f.now.known = nil, false // its place in segs will hold another segment
 }
 
 // segments appends the stretches between the knots of the media; now holds the modes at the start of the step.

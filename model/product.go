@@ -29,9 +29,13 @@ type productTerm struct {
 	x      [3][]float64
 }
 
-// separates tells whether the chain keeps products of axes: one constant medium in every step, more than one axis.
-func separates(axes [3]*axis, chain []*chainStep) bool {
-	if axes[1].kind == lumped {
+// mostTerms is how many steps are worth a product each; beyond that the tensor, whose cost does not grow with the chain, is cheaper.
+const mostTerms = 12
+
+// separates tells whether the chain, of steps steps in the end, keeps products of axes: one constant medium in every step,
+// more than one axis.
+func separates(axes [3]*axis, chain []*chainStep, steps int) bool {
+	if axes[1].kind == lumped || steps > mostTerms {
 		return false
 	}
 	for _, cs := range chain {
@@ -106,6 +110,9 @@ func (f *product) run(cs *chainStep) {
 	}
 	f.steps = append(f.steps, st)
 }
+
+// pop takes the last step back.
+func (f *product) pop() { f.steps = f.steps[:len(f.steps)-1] }
 
 func (f *product) stepAt(t float64) *productStep {
 	for _, st := range f.steps {
