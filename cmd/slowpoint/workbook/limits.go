@@ -27,7 +27,7 @@ type limits struct {
 type scope struct {
 	products []*product
 	stages   map[*model.Stage]bool // of any of them
-	faulty   bool                  // one of them has faults
+	unsure   bool                  // the stages of one of them are not all known
 	points   map[string]*pointName // of any of them, by key
 	readings []echoes              // of the limits for them, and of their tables and groups
 	given    map[string]bool       // tables and groups whose readings are there already
@@ -47,9 +47,10 @@ func (ls *limits) scope(name string, products []*product) *scope {
 	sc := &scope{products: products, stages: map[*model.Stage]bool{}, points: map[string]*pointName{}, given: map[string]bool{}}
 	ls.scopes[name], ls.order = sc, append(ls.order, sc)
 	for _, p := range products {
-		sc.faulty = sc.faulty || len(p.because) > 0
+		sc.unsure = sc.unsure || len(p.Steps) == 0 || ls.stepsAtFault(p)
 		for i := range p.Steps {
 			sc.stages[p.Steps[i].Stage] = true
+			sc.unsure = sc.unsure || p.Steps[i].Stage == nil
 		}
 		for i := range p.Points {
 			k := key(p.Points[i].Name)
@@ -60,6 +61,22 @@ func (ls *limits) scope(name string, products []*product) *scope {
 		}
 	}
 	return sc
+}
+
+// stepsAtFault tells whether a product has a fault in the sheet Steps, so that a step of its chain may be missing.
+func (ls *limits) stepsAtFault(p *product) bool {
+	g := ls.grids["Steps"]
+	for _, e := range p.because {
+		if g == nil || e.At.Sheet == g.name {
+			return true
+		}
+	}
+	return false
+}
+
+// nowhere tells whether it is certain that no product of the scope has a stage.
+func (sc *scope) nowhere(s *model.Stage) bool {
+	return s != nil && !sc.unsure && len(sc.products) > 0 && !sc.stages[s]
 }
 
 // timeTable is the rows of one name in Tables.
@@ -81,6 +98,9 @@ func (r *reader) readLimits() {
 	ls := &limits{reader: r, tables: map[string]*timeTable{}, groups: map[string]*group{}, inLimits: map[string]bool{}, seen: map[string]int{}, scopes: map[string]*scope{}}
 	ls.readTables()
 	ls.readGroups()
+	for _, e := range r.unread["Limits"] {
+		ls.unknown(e.At, "(part of the sheet Limits)", e)
+	}
 	t := r.tables["Limits"]
 	if t == nil {
 		return
@@ -99,11 +119,20 @@ func (r *reader) readLimits() {
 			}
 		}
 	}
+	for _, l := range t.strays { // nor what these rows were meant to be
+		ls.unknown(l.ref(), "(row "+strconv.Itoa(l.row.n)+")", l.because[0])
+	}
 	for _, sc := range ls.order {
 		for _, p := range sc.products {
 			p.readings = append(p.readings, sc.readings)
 		}
 	}
+}
+
+// unknown keeps what nobody can read as a limit for every product, so that none is met by what is missing.
+func (ls *limits) unknown(at cell.Ref, name string, e cell.Error) {
+	ls.plan.Limits = append(ls.plan.Limits, rules.Limit{At: at, Name: name, Kind: rules.Stated, Applies: rules.Applies{All: true},
+		Unreadable: e.Error(), Typed: map[string]string{}})
 }
 
 func (ls *limits) readTables() {
@@ -204,6 +233,11 @@ func (ls *limits) read(l *line) {
 	ls.where(l, &lim, sc)
 	numbers(l, &lim)
 	lim.Clock = clockOf(l, &lim)
+	for _, s := range []*model.Stage{lim.Clock.Start, lim.Clock.End} {
+		if sc.nowhere(s) {
+			l.fault("Clock starts", l.entry("Clock starts").text, stageNowhere)
+		}
+	}
 	choices(l, &lim)
 	words := ls.citation(l, &lim)
 	hidden := l.row.hidden
@@ -224,6 +258,9 @@ func (ls *limits) read(l *line) {
 		hidden = hidden || g.line.row.hidden
 		sc.give("group "+key(g.Name), g.line.readings)
 	}
+	if lim.Group != "" && ls.groups[key(lim.Group)] == nil {
+		l.suffer(ls.unread["Groups"])
+	}
 	if lim.Kind != nil {
 		needs(l, lim.Kind)
 		if l.sound() {
@@ -236,6 +273,10 @@ func (ls *limits) read(l *line) {
 	}
 	if len(l.because) > 0 {
 		lim.Unreadable = l.because[0].Error()
+		lim.Advice = lim.Advice && l.sure("Level")
+		if !l.sure("Applies to") || lim.Applies == (rules.Applies{}) {
+			lim.Applies = rules.Applies{All: true} // it may be meant for any product
+		}
 	}
 	for h := range l.t.place {
 		if l.filled(h) && lim.Typed[h] == "" && !strings.HasPrefix(h, "?") {
@@ -252,6 +293,12 @@ func (ls *limits) read(l *line) {
 			p.suffer(l.because)
 		}
 	}
+}
+
+// sure tells whether a column is the only one that its cells may have been meant for.
+func (l *line) sure(heading string) bool {
+	h := l.t.place[heading]
+	return h != nil && len(h.faults) == 0
 }
 
 // give adds readings to those of a scope; those of a table or group (which have a name) once.
@@ -294,7 +341,6 @@ func (ls *limits) appliesTo(l *line, lim *rules.Limit) *scope {
 		ps := ls.families[key(family)]
 		if key(family) == "" || len(ps) == 0 {
 			l.fault("Applies to", typed, familyUnknown, ls.offer(family, ls.familyNames))
-			lim.Applies.Family = ls.near(family, ls.familyNames) // its products cannot be told met
 			return ls.scope("", nil)
 		}
 		lim.Applies.Family = ps[0].Family
@@ -309,7 +355,6 @@ func (ls *limits) appliesTo(l *line, lim *rules.Limit) *scope {
 		hint = "; did you mean family: " + ps[0].Family + "?"
 	}
 	l.fault("Applies to", typed, appliesUnknown, hint)
-	lim.Applies.Product = ls.near(typed, ls.productNames)
 	return ls.scope("", nil)
 }
 
@@ -356,17 +401,15 @@ func (ls *limits) stages(l *line, lim *rules.Limit, sc *scope) {
 			}
 		}
 	}
-	if !l.sound() || sc.faulty || len(sc.products) == 0 {
-		return // the stages of products with faults may be what is at fault
+	if !l.sound() || len(lim.Stages) == 0 {
+		return
 	}
-	for _, st := range lim.Stages { // one product with one of the stages is enough
-		if sc.stages[st] {
-			return
-		}
+	found := false
+	for _, st := range lim.Stages { // of several that are joined one is enough, of a pair both must be there
+		found = found || !sc.nowhere(st)
 	}
-	if lim.Then == nil || !sc.stages[lim.Then] {
-		// the row itself is sound: its verdict is not applicable, or cannot tell
-		ls.add(stageNowhere.problem(l.at("Stage"), cell.Fault, "Stage", typed))
+	if !found || sc.nowhere(lim.Then) {
+		l.fault("Stage", typed, stageNowhere)
 	}
 }
 

@@ -198,7 +198,7 @@ func (r *reader) finish() {
 		}
 		r.add(s.problem(f.first, cell.Note, "", "", args...))
 	}
-	if len(r.products) == 0 && r.tables["Products"] != nil && r.tables["Products"].whole() {
+	if len(r.products) == 0 && len(r.unread["Products"]) == 0 {
 		r.add(noProducts.problem(cell.Ref{Sheet: r.grids["Products"].name}, cell.Fault, "", ""))
 	}
 	for _, p := range r.products {
@@ -443,6 +443,3 @@ func (r *reader) matching(word, processName string) []*product {
 	}
 	return out
 }
-
-// whole tells whether the table has all its needed headings.
-func (t *table) whole() bool { return complete(t.sheet, t.place) }

@@ -274,6 +274,50 @@ func TestUnreadableLimit(t *testing.T) {
 	}
 }
 
+// TestBrokenLimits: whatever is wrong with a row of Limits, the products that it may be meant for are not met without it.
+func TestBrokenLimits(t *testing.T) {
+	for _, c := range []struct{ name, change, concerns string }{
+		{"a family that is none", "set Limits!D2 = family: tray", "all"},
+		{"a product that is none", "set Limits!D3 = Nothing like it", "all"},
+		{"Applies to is blank", "set Limits!D3 =", "all"},
+		{"Applies to is an error", "set Limits!D3 = #N/A", "all"},
+		{"Applies to twice", "set Limits!R1 = Applies to", "all"},
+		{"a stage of no step", "set Limits!C3 = thaw", "Stew"},
+		{"a pair of which one is nowhere", "row Limits = Late | delay | cook > freeze | Roll | | | | 30", "Roll"},
+		{"a clock from a stage of no step", "set Limits!I3 = stage start: reheat\nset Limits!F3 =", "Stew"},
+		{"a clock to a stage of no step", "set Limits!I3 = stage end: freeze\nset Limits!F3 =", "Stew"},
+		{"a table that is none", "set Limits!M4 = Row", "Block"},
+		{"a row without name, rule and product", "row Limits = | | cook | | | 70 | | 2", "all"},
+		{"two sheets of limits", `file limits = Limit,Rule,Applies to\nMore,stated,all\n`, "all"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			name := filepath.Join(t.TempDir(), "plan.xlsx")
+			if r := newRecipe(t, c.change); r.onlyCSV {
+				name = t.TempDir()
+				r.folder(t, name)
+			} else {
+				r.workbook(t, name)
+			}
+			p, err := Read(name)
+			if err != nil {
+				t.Fatal(err)
+			}
+			if p.Problems.Faults() == 0 {
+				t.Error("no error is told")
+			}
+			var got []string
+			for _, l := range p.Limits {
+				a := l.Applies
+				if l.Unreadable != "" && !l.Advice && (c.concerns == "all" && a.All || c.concerns != "all" && (a.All || a.Product == c.concerns)) {
+					return
+				}
+				got = append(got, fmt.Sprintf("%s for %+v: %s", l.Name, a, l.Unreadable))
+			}
+			t.Errorf("no broken limit concerns %s: %s", c.concerns, strings.Join(got, "; "))
+		})
+	}
+}
+
 // TestColumns: every heading is there once, every needed word list and unit fits its column.
 func TestColumns(t *testing.T) {
 	for _, s := range Sheets {

@@ -19,6 +19,8 @@ type table struct {
 	place map[string]*head // by heading without unit
 	lines []*line
 	cut   bool // it has more rows than are read
+	// strays are rows without any needed cell; nobody knows what they belong to
+	strays []*line
 }
 
 // head is one column of a table.
@@ -103,6 +105,9 @@ func (r *reader) open(g *grid, s *Sheet) *table {
 	if g.refused != "" {
 		r.cannotRead(s, cell.Error{At: cell.Ref{Sheet: g.name}, Msg: g.refused, Hint: g.mend})
 		return nil
+	}
+	if len(g.rows) == 0 && s.Name == "Products" {
+		return nil // that the plan has no product is told in the end
 	}
 	if len(g.rows) == 0 {
 		r.add(emptySheet.problem(cell.Ref{Sheet: g.name}, cell.Warning, "", ""))
@@ -301,7 +306,11 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 			}
 			filled = true
 		}
-		if !filled || l.stray() {
+		if !filled {
+			continue
+		}
+		if l.stray() {
+			t.strays = append(t.strays, l)
 			continue
 		}
 		if len(t.lines) == t.sheet.most() {
@@ -328,7 +337,9 @@ func (l *line) stray() bool {
 	e := &l.row.cells[0]
 	at := l.t.ref(l.row.n, int(e.col))
 	if len(l.because) == 0 {
-		l.r.add(keyMissing.problem(at, cell.Fault, "", e.text, l.t.sheet.Columns[0].Heading))
+		e := keyMissing.problem(at, cell.Fault, "", e.text, l.t.sheet.Columns[0].Heading)
+		l.r.add(e)
+		l.because.Add(e)
 	}
 	return true
 }
