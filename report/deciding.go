@@ -3,6 +3,7 @@ package report
 import (
 	"math"
 	"sort"
+	"strings"
 
 	"slowpoint/model"
 	"slowpoint/rules"
@@ -81,14 +82,17 @@ func aim(l *rules.Limit) (c *float64, heats bool) {
 	return nil, false
 }
 
-// tightness is that of a finding, without a room in K that says nothing of the food: one that the end of a step makes, and one of a
-// limited time of which nothing was used; the room in time counts then, or none. The length of a step was typed: it has none.
+// tightness is that of a finding, without a room in K that says nothing of the food: one that the end of a step
+// makes; the room in time counts then, or none. The length of a step was typed, and a limited time of which nothing was used was
+// not put to the test: they have none.
 func (p *Product) tightness(f *rules.Finding) float64 {
 	if f.Verdict == rules.Met && f.Limit != nil && f.Limit.Kind == rules.Duration {
 		return math.Inf(1)
 	}
-	unused := f.Verdict == rules.Met && f.Unit == "min" && !needsMore(f) && finite(f.Value) && *f.Value == 0
-	if !unused && p.madeByUntil(f) == "" {
+	if f.Verdict == rules.Met && f.Unit == "min" && !needsMore(f) && finite(f.Value) && *f.Value == 0 {
+		return math.Inf(1)
+	}
+	if p.madeByUntil(f) == "" {
 		return tightness(f)
 	}
 	g := *f
@@ -192,5 +196,6 @@ func (p *Product) Row() Row {
 			r.Why = f.Why
 		}
 	}
+	r.Why = strings.TrimSpace(strings.Join(append([]string{r.Why}, p.beside()...), " "))
 	return r
 }

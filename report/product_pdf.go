@@ -173,10 +173,10 @@ func (x *sheet) verdictBox() {
 	word := verdictWord(overall(x.p.Judgement.Verdict))
 	wide := widthMM(word, 20, true) + 8
 	size := 12.0
-	lines := wrap(d.clean(x.headline()), frameWide-wide-4, size, false)
+	lines := wrap(d.clean(x.headline()+x.besides()), frameWide-wide-4, size, false)
 	if len(lines) > 5 {
 		size = kitchen
-		lines = wrap(capped(d.clean(x.headline()), frameWide-wide-4, size, 8), frameWide-wide-4, size, false)
+		lines = wrap(capped(d.clean(x.headline()+x.besides()), frameWide-wide-4, size, 9), frameWide-wide-4, size, false)
 	}
 	h := max(float64(len(lines))*height(size)+5, 14)
 	d.frame(d.left, d.y, frameWide, h, 2)
@@ -378,8 +378,12 @@ func (x *sheet) advice(dry bool) float64 {
 			break
 		}
 	}
+	note := ""
+	if a := x.p.adviceNotMet(); a != "" {
+		note = shorten(d.clean(a), frameWide, kitchen, false)
+	}
 	if dry {
-		n := len(wrap(d.clean(lever), frameWide, kitchen, false)) + len(wrap(d.clean(foot), frameWide, kitchen, false))
+		n := btoi(note != "") + len(wrap(d.clean(lever), frameWide, kitchen, false)) + len(wrap(d.clean(foot), frameWide, kitchen, false))
 		for _, s := range checks {
 			n += len(wrap(d.clean(s), frameWide-widthMM("1.  ", kitchen, false), kitchen, false))
 		}
@@ -388,6 +392,9 @@ func (x *sheet) advice(dry bool) float64 {
 	d.para(say("checks title"), style{size: 13, bold: true, after: 0.8})
 	for i, s := range checks {
 		d.item(fmt.Sprintf("%d.", i+1), s, kitchen)
+	}
+	if note != "" {
+		d.para(note, style{size: kitchen})
 	}
 	d.y++
 	d.para(say("lever title"), style{size: 13, bold: true, after: 0.8})
@@ -426,7 +433,7 @@ func (x *sheet) front() {
 	d, h, p := x.doc, x.head, x.p
 	d.page()
 	d.heading(say("front title", p.Product.Name), 0, 20)
-	d.para(say("front verdict", verdictWord(overall(p.Judgement.Verdict)), x.headline()+x.lessRoom()), style{size: 11, bold: true, after: 1})
+	d.para(say("front verdict", verdictWord(overall(p.Judgement.Verdict)), x.headline()+x.lessRoom()+x.besides()), style{size: 11, bold: true, after: 1})
 	d.text(x.counts())
 	d.text(strings.Join(CautionText()[:2], " ") + say("see cautions"))
 	for _, g := range p.Judgement.Groups {

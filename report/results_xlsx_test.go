@@ -63,7 +63,7 @@ func TestWorkbookReadBack(t *testing.T) {
 			"Why": `Products!C7: "-40" a length must be more than 0 – type the thickness in mm`}},
 		{"the deciding limit is the one that is not met", "Overview", 3, map[string]string{"No. in the plan": "1", "Product": "Stew & <rice>", "Family": "stews", "Recipe version": "v2",
 			"Batch": "B17", "Process": "Cook-chill", "Verdict": "not met", "Deciding limit": "Chill 90", "Margin (°C difference)": "-9", "Row of the plan": "Products row 6",
-			"Why": "the record ends before the food reaches 3 °C."}},
+			"Why": "the record ends before the food reaches 3 °C. The step Chiller did not reach its Until within its longest duration (1 h 30 min)."}},
 		{"a finding", "Findings", 2, map[string]string{"Product": "Stew & <rice>", "Process": "Cook-chill", "Limit": "Core 70", "Rule": "hold", "Level": "must", "Verdict": "met",
 			"Value": "14.098765", "Required": "2", "Unit": "min", "Margin (°C difference)": "6.4877", "Margin (min)": "12.0988", "Deciding time (min)": "73.0083",
 			"Deciding place": "2.0 mm below the centre", "Up (mm)": "-2", "Across (mm)": "0", "Along (mm)": "0", "Clock start (min)": "54.0333", "Clock end (min)": "74.4167",

@@ -147,7 +147,7 @@ func (t *Text) Add(p *Product) error {
 	t.rows = append(t.rows, slimOf(t.h, p, len(t.rows)+1))
 	x := &sheet{doc: &doc{head: t.h}, p: p, decides: p.decides(), order: p.worstFirst(), cautions: Cautions(t.h, p)}
 	t.heading(1, "product", len(t.rows), p.Product.Name)
-	t.line("verdict", overall(p.Judgement.Verdict), x.headline()+x.lessRoom())
+	t.line("verdict", overall(p.Judgement.Verdict), x.headline()+x.lessRoom()+x.besides())
 	t.plain(x.counts())
 	for _, e := range t.h.ProblemsOf(p) {
 		t.problem(e)

@@ -223,6 +223,48 @@ func (sp *spent) add(from, to float64) {
 	sp.total.to, sp.lastEnd = to, to
 }
 
+// deepest and shallowest are how far the knots of a path lie within a region at most and at least, over intervals whose ends
+// are knots, K; negative: how far they lie outside it.
+func (p path) deepest(ivs []interval, r region) float64 {
+	most := math.Inf(-1)
+	for _, iv := range ivs {
+		for _, c := range p.in(iv).c {
+			most = math.Max(most, math.Min(c-r.lo, r.hi-c))
+		}
+	}
+	return most
+}
+
+func (p path) shallowest(ivs []interval, r region) float64 {
+	least := math.Inf(1)
+	for _, iv := range ivs {
+		for _, c := range p.in(iv).c {
+			least = math.Min(least, math.Min(c-r.lo, r.hi-c))
+		}
+	}
+	return least
+}
+
+// depth ranks places that a time in a region (s) cannot rank: how far outside one was that never was in it (K, negative), how
+// far inside one that was there all the while (positive); 0 between the two.
+func (v *view) depth(p path, r region, s float64, c Counting) float64 {
+	if s == 0 {
+		return math.Min(0, p.deepest(v.stages, r))
+	}
+	all := 0.0
+	for _, iv := range v.stages {
+		if c == Total {
+			all += iv.b - iv.a
+		} else {
+			all = math.Max(all, iv.b-iv.a)
+		}
+	}
+	if s < all-sameS {
+		return 0
+	}
+	return math.Max(0, p.shallowest(v.stages, r))
+}
+
 // counted picks the period that a counting asks for.
 func (sp spent) counted(c Counting) interval2 {
 	switch c {

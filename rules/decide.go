@@ -33,6 +33,9 @@ type outcome struct {
 	sparse     string // why the readings cannot show it; "" if they can
 }
 
+// neverBad is added to how unfavourable a place is that never came to the level, so that it ranks behind any time taken.
+const neverBad = 1e6
+
 // none is an outcome without numbers.
 func none(v Verdict, word string) outcome {
 	nan := math.NaN()
@@ -209,13 +212,19 @@ func (v *view) candidates(s scope, q question) []candidate {
 		}
 		times := v.c.lightTimes(i)
 		out := make([]float64, len(times))
+		offset := math.NaN() // so that the search sees the slope among places that never come to the level
 		p, _ := v.h.Least(v.c.spots[i], s.surfaceOnly, func(p model.Place) float64 {
 			v.h.Course(p, times, out)
 			o := q.measure(path{t: times, c: out}, tilt{rank: true})
 			if o.verdict == NotApplicable {
 				return 1e9
 			}
-			return -o.bad
+			if math.IsNaN(offset) {
+				if offset = 0; o.bad > neverBad/2 {
+					offset = neverBad
+				}
+			}
+			return offset - o.bad
 		})
 		add(p, v.c.spots[i].Surface && s.surfaceOnly)
 		for _, p := range v.edges(p, q, s.surfaceOnly) {

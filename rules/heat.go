@@ -59,12 +59,13 @@ func (v *view) heatWindow(p path, w window, t tilt) outcome {
 	done, reached := q.reach(l.warmSide(*l.ToC+t.errK+t.ownK), start, second)
 	if !reached {
 		ran := w.b - start
-		o.value, o.bad, o.margin, o.at = ran/60, ran/60, *l.TimeS-ran, w.b
+		to := l.warmSide(*l.ToC + t.errK + t.ownK)
+		o.value, o.bad, o.margin, o.at = ran/60, neverBad-q.deepest([]interval{w.interval}, to), *l.TimeS-ran, w.b
 		o.holes = holes{"value": lasting(ran, -1), "stage": v.stageNames()}
 		switch {
 		case !l.within(ran, *l.TimeS):
 		case w.b > w.stageTo+sameS:
-			o.word = "heat stage"
+			o.word, o.margin = "heat stage", math.Min(o.margin, w.stageTo-w.b)
 		default:
 			o.verdict, o.word, o.margin = CannotTell, "heat open", math.NaN()
 		}
@@ -74,9 +75,12 @@ func (v *view) heatWindow(p path, w window, t tilt) outcome {
 	o.end, o.at, o.value, o.bad, o.margin = done, done, took/60, took/60, *l.TimeS-took
 	o.holes = holes{"value": lasting(took, 1), "stage": v.stageNames()}
 	o.word = "heat closed"
+	if took == 0 {
+		o.bad = *l.ToC + t.errK + t.ownK - q.value(start)
+	}
 	switch {
 	case done > w.stageTo+sameS:
-		o.word = "heat stage"
+		o.word, o.margin = "heat stage", math.Min(o.margin, w.stageTo-done)
 	case l.within(took, *l.TimeS):
 		o.verdict = Met
 	}

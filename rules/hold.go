@@ -27,7 +27,7 @@ func judgeHold(v *view) Finding {
 		if l.ToC != nil {
 			o.word = "hold below"
 		}
-		o.value, o.bad, o.margin = held.s/60, -held.s/60, held.s-*l.TimeS
+		o.value, o.bad, o.margin = held.s/60, -held.s/60-v.depth(p, r, held.s, l.Counting), held.s-*l.TimeS
 		o.slow = l.ToC == nil
 		if !t.rank {
 			o.holes = holes{"value": lasting(held.s, -1), "count": strconv.Itoa(sp.count)}
@@ -36,7 +36,7 @@ func judgeHold(v *view) Finding {
 		again := l.Counting == Once && sp.count > 1
 		switch {
 		case again:
-			o.word, o.bad = "hold again", 1e5-held.s/60
+			o.word, o.bad, o.margin = "hold again", 1e5-held.s/60, math.NaN()
 		case l.enough(held.s, *l.TimeS):
 			o.verdict = Met
 		}

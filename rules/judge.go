@@ -1,6 +1,9 @@
 package rules
 
-import "strings"
+import (
+	"strconv"
+	"strings"
+)
 
 // same compares two words as a person would: without regard to case and surrounding blanks.
 func same(a, b string) bool { return strings.EqualFold(strings.TrimSpace(a), strings.TrimSpace(b)) }
@@ -20,9 +23,13 @@ func Judge(limits []Limit, groups []Group, s Subject) Judgement {
 		}
 		f := judgeOne(l, usual)
 		if low != nil {
-			if g := judgeOne(l, low); lessFavourable(g, f) {
-				f = g
+			g := judgeOne(l, low)
+			if lessFavourable(g, f) {
+				f, g = g, f
 				f.LowConductivity = true
+			}
+			if f.Verdict == Met && f.CarryOver == "" && g.CarryOver != "" { // true of one run is a reservation for both
+				f.carriedOver(g.CarryOver)
 			}
 		}
 		j.Findings = append(j.Findings, f)
@@ -58,7 +65,9 @@ func judgeOne(l *Limit, c *courses) Finding {
 		}
 		return v.blank(CannotTell, say("stage lacking own", holes{"stage": s.Name}))
 	}
-	return l.Kind.judge(v)
+	f := l.Kind.judge(v)
+	v.carryOver(&f)
+	return f
 }
 
 // lessFavourable tells whether a is worse than b: by verdict, then by margin.
@@ -67,7 +76,7 @@ func lessFavourable(a, b Finding) bool {
 		return rank(a.Verdict) > rank(b.Verdict)
 	}
 	switch {
-	case a.MarginS != nil && b.MarginS != nil:
+	case a.MarginS != nil && b.MarginS != nil && *a.MarginS != *b.MarginS:
 		return *a.MarginS < *b.MarginS
 	case a.MarginK != nil && b.MarginK != nil:
 		return *a.MarginK < *b.MarginK
@@ -77,7 +86,7 @@ func lessFavourable(a, b Finding) bool {
 
 // conclude finds the verdict of the product from what weighs: its must findings that are applicable.
 func (j *Judgement) conclude() {
-	j.Verdict, j.Why = CannotTell, say("no limit judged", nil)
+	j.Verdict, j.Why = CannotTell, say("no limit judged", nil)+j.idle()
 	worst := NotApplicable
 	for _, f := range j.Findings {
 		if f.Level == "must" && rank(f.Verdict) > rank(worst) {
@@ -87,4 +96,21 @@ func (j *Judgement) conclude() {
 	if worst != NotApplicable {
 		j.Verdict, j.Why = worst, ""
 	}
+}
+
+// idle says why the limits of a product did not apply, the first three.
+func (j *Judgement) idle() string {
+	var s []string
+	for _, f := range j.Findings {
+		if f.Level == "must" && f.Verdict == NotApplicable {
+			s = append(s, say("did not apply", holes{"limit": f.Limit.Name, "why": strings.TrimSuffix(f.Why, ".")}))
+		}
+	}
+	switch n := len(s); {
+	case n == 0:
+		return ""
+	case n > 3:
+		s = append(s[:3], say("and more", holes{"count": strconv.Itoa(n - 3)}))
+	}
+	return ": " + strings.Join(s, "; ")
 }

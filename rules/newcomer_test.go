@@ -84,3 +84,44 @@ func TestEndlessLethality(t *testing.T) {
 		t.Errorf("a usual z: %v: %s", f.Verdict, f.Why)
 	}
 }
+
+// TestOnlyByCarryOver tells a limit that is met only by what the food gets after the cook.
+func TestOnlyByCarryOver(t *testing.T) {
+	both := st(model.Cook, model.Rest)
+	table := &Table{Name: "T", Rows: []Row{{C: 63, S: 3600}, {C: 66, S: 0}}}
+	for _, x := range []struct {
+		name, course string
+		l            Limit
+		says         string // "": no caution
+	}{
+		{"reached in the rest", "0:5 60:37.8 80:67.8 90:60", Limit{Kind: Hold, FromC: c(65), TimeS: c(0), Counting: Total, Stages: both}, "left the cook at 37.8 °C and rose to 67.8 °C"},
+		{"table in the rest", "0:5 60:37.8 80:67.8 90:60", Limit{Kind: HoldTable, Table: table, Counting: Total, Stages: both}, "left the cook at 37.8 °C"},
+		{"whole chain", "0:5 60:37.8 80:67.8 90:60", Limit{Kind: Hold, FromC: c(65), TimeS: c(0), Counting: Total}, "left the cook at 37.8 °C"},
+		{"lethality in the rest", "0:5 60:37.8 80:67.8 90:60", Limit{Kind: Lethality, ReferenceC: c(65), ZK: c(7), TimeS: c(60), Stages: both}, "rose to 67.8 °C"},
+		{"the rest only", "0:5 60:37.8 80:67.8 90:60", Limit{Kind: Hold, FromC: c(65), TimeS: c(0), Counting: Total, Stages: st(model.Rest)}, "rose to 67.8 °C"},
+		{"in Fahrenheit", "0:5 60:37.8 80:67.8 90:60", Limit{Kind: Hold, FromC: f(145), TimeS: c(0), Counting: Total, Stages: both, Typed: map[string]string{"From": "145 °F"}}, "left the cook at 100 °F"},
+		{"kept warm by standing", "0:5 50:66 60:68 90:65", Limit{Kind: Hold, FromC: c(65), TimeS: min_(30), Counting: Total, Stages: both}, "the cook alone is not enough"},
+		{"met in the cook", "0:5 50:66 60:68 90:65", Limit{Kind: Hold, FromC: c(65), TimeS: min_(5), Counting: Total, Stages: both}, ""},
+		{"not met at all", "0:5 60:37.8 80:60 90:50", Limit{Kind: Hold, FromC: c(65), TimeS: c(0), Counting: Total, Stages: both}, ""},
+		{"the cook only", "0:5 50:66 60:68 90:65", Limit{Kind: Hold, FromC: c(65), TimeS: min_(5), Counting: Total, Stages: st(model.Cook)}, ""},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			g := one(t, x.l, record(t, "cook 0-60, rest 60-90", x.course))
+			if (g.CarryOver != "") != (x.says != "") || !strings.Contains(g.CarryOver, x.says) {
+				t.Errorf("%v: %q", g.Verdict, g.CarryOver)
+			}
+			if (len(g.Cautions) > 0) != (x.says != "") && x.l.Kind != Lethality {
+				t.Errorf("cautions %v", g.Cautions)
+			}
+		})
+	}
+}
+
+// TestOnlyIdleLimits says why nothing was judged.
+func TestOnlyIdleLimits(t *testing.T) {
+	l := Limit{Name: "A", Kind: CoolWithin, FromC: c(80), ToC: c(21), TimeS: min_(120), Clock: crossing, Applies: Applies{All: true}}
+	j := Judge([]Limit{l}, nil, Subject{Product: "P", History: record(t, "cool 0-300", "0:75 300:20")})
+	if want := "no limit judged: A did not apply (Nothing was above 80 °C: the warmest place judged reached 75 °C"; j.Verdict != CannotTell || !strings.HasPrefix(j.Why, want) {
+		t.Errorf("%v: %s", j.Verdict, j.Why)
+	}
+}

@@ -141,6 +141,7 @@ type Finding struct {
 	Why             string     // one sentence
 	Notes           []string   // e.g. rose above From again at 3 h 05 min
 	Cautions        []string   // keys of the report's cautions: "slow come-up lethality", "lethality without floor", "below 60 °C table row", …
+	CarryOver       string     // that the limit is met only by what the food gets after its heating, in a sentence with numbers; "" elsewhere
 	LowConductivity bool       // this is the finding of the second run at 0.9 k
 }
 
@@ -163,7 +164,7 @@ type Subject struct {
 // Judgement is everything that the limits say of a product.
 type Judgement struct {
 	Verdict  Verdict
-	Why      string // for a verdict without findings: "no limit judged"
+	Why      string // for a verdict without findings: "no limit judged", and why those that there are did not apply
 	Findings []Finding
 	Groups   []GroupFinding
 }

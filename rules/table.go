@@ -48,6 +48,10 @@ func (v *view) shown(best outcome, p path, rows []*Row, top float64) outcome {
 	return best
 }
 
+// rowTie is what a kelvin weighs between places that kept the same row all the while, in shares of the row's time: so little
+// that it changes no row.
+const rowTie = 1e-4
+
 // row judges one row at one place, whose warmest temperature is top.
 func (v *view) row(p path, t tilt, row *Row, top float64) outcome {
 	r := v.l.warmSide(row.C + t.errK + t.ownK)
@@ -62,7 +66,10 @@ func (v *view) row(p path, t tilt, row *Row, top float64) outcome {
 			o.value, o.verdict, o.word = 1, Met, "table instant"
 			o.at, _ = p.mostOf(v.stages, 1)
 		}
-		o.bad = -o.value
+		o.bad = -o.value - rowTie*math.Max(0, top-row.C)
+		if o.value == 0 {
+			o.bad = row.C + t.errK + t.ownK - top
+		}
 		return o
 	}
 	var sp spent
@@ -71,11 +78,19 @@ func (v *view) row(p path, t tilt, row *Row, top float64) outcome {
 	}
 	held := sp.counted(v.l.Counting)
 	o.value, o.bad, o.margin = held.s/row.S, -held.s/row.S, held.s-row.S
+	if d := v.depth(p, r, held.s, v.l.Counting); d < 0 {
+		o.bad -= d
+	} else {
+		o.bad -= rowTie * d
+	}
 	o.start, o.end, o.at = when(held, sp.count)
 	if !t.rank {
 		o.holes["value"] = lasting(held.s, -1)
 	}
-	if v.l.enough(held.s, row.S) && !(v.l.Counting == Once && sp.count > 1) {
+	switch {
+	case v.l.Counting == Once && sp.count > 1:
+		o.margin = math.NaN()
+	case v.l.enough(held.s, row.S):
 		o.verdict, o.word = Met, "table met"
 	}
 	return o

@@ -14,6 +14,8 @@ type holes map[string]string
 // {to}, {time}, {second} are the limit's own figures as typed; results are rounded to the side that is less favourable.
 var words = map[string]string{
 	"no limit judged":   "no limit judged",
+	"did not apply":     "{limit} did not apply ({why})",
+	"and more":          "and {count} more",
 	"no places":         "The history has no place in the food to judge.",
 	"no surface":        "The history has no place on the surface to judge.",
 	"no medium":         "The temperature of the surroundings is not known during the whole of the stages, so it cannot be told.",
@@ -92,6 +94,11 @@ var words = map[string]string{
 	"who slow":   "The slowest place ({place})",
 	"who named":  "The {place}",
 	"who medium": "The medium",
+
+	"carry-over":            "Met only through the rise after the {stage}: the slowest place ({place}) left the {stage} at {left} and rose to {rose}",
+	"carry-over moist":      "; a moist surface loses heat while standing, so the true rise is smaller",
+	"carry-over kept":       "Met only with the time after the {stage}: the slowest place ({place}) left the {stage} at {left}, and the {stage} alone is not enough",
+	"carry-over kept moist": "; a moist surface loses heat while standing, so the true food cools faster",
 
 	"note again":     "Rose above {temp} again at {when}; the clock does not start anew.",
 	"note heatings":  "The process has {count} heatings separated by chilling; each is judged on its own, and the best counts.",
