@@ -43,16 +43,15 @@ func churchillBernstein(re, pr float64) float64 {
 
 // sphereForced is the Nusselt number of a sphere in a stream, on its diameter, 100 ≤ Re ≤ 50000, 0.003 ≤ Pr ≤ 10
 // (Melissari & Argyropoulos 2005, Int. J. Heat Mass Transfer; year and journal from memory).
-func sphereForced(re, pr float64) float64 { return 2 + 0.47*math.Sqrt(re)*math.Pow(pr, 0.36) }
-
-// plateForced is the mean Nusselt number of a flat plate along a stream, on its length: laminar below Re 5e5
-// (Incropera & DeWitt, Fundamentals of Heat and Mass Transfer), turbulent above. Blunt edges of real food lie 20 to 60 % higher.
-func plateForced(re, pr float64) float64 {
-	if re < 5e5 {
-		return 0.664 * math.Sqrt(re) * math.Cbrt(pr)
-	}
-	return 0.036 * math.Pow(re, 0.8) * math.Cbrt(pr)
+// Above Re 50000 the value there is kept, which is low.
+func sphereForced(re, pr float64) float64 {
+	return 2 + 0.47*math.Sqrt(math.Min(re, 5e4))*math.Pow(pr, 0.36)
 }
+
+// plateForced is the mean Nusselt number of a flat plate along a stream, on its length, with the laminar formula throughout
+// (Incropera & DeWitt, Fundamentals of Heat and Mass Transfer): from Re 5e5 on, where the stream turns turbulent, it is a lower bound.
+// Blunt edges of real food lie 20 to 60 % higher.
+func plateForced(re, pr float64) float64 { return 0.664 * math.Sqrt(re) * math.Cbrt(pr) }
 
 // churchillChu is the Nusselt number of a horizontal cylinder in still fluid, on its diameter, 1e-5 < Ra < 1e12
 // (Churchill & Chu 1975, Int. J. Heat Mass Transfer 18:1049-1053).

@@ -243,13 +243,18 @@ func (c *checker) air(st *Step, e *Exposure, high, before float64) {
 	if !heats {
 		return
 	}
+	wetOrDry(&c.found, e)
+}
+
+// wetOrDry refuses air that heats the food where dry was not said.
+func wetOrDry(found *cell.Errors, e *Exposure) {
 	switch {
 	case e.Wet == nil:
-		c.add(e.At, "Surface", "", "air that is warmer than the food needs dry or wet here: a wet surface heats much more slowly",
-			"type dry only for food that is wrapped, lidded or truly dry")
+		found.Add(cell.Error{At: e.At, Field: "Surface", Msg: "air that is warmer than the food needs dry or wet here: a wet surface heats much more slowly",
+			Hint: "type dry only for food that is wrapped, lidded or truly dry"})
 	case *e.Wet:
-		c.add(e.At, "Surface", "wet", "heating a wet surface in air cannot be calculated yet, and as a dry one it would come out far too fast",
-			"use film with a coefficient and temperature from your own measurements, or judge a probe record")
+		found.Add(cell.Error{At: e.At, Field: "Surface", Typed: "wet", Msg: "heating a wet surface in air cannot be calculated yet, and as a dry one it would come out far too fast",
+			Hint: "use film with a coefficient and temperature from your own measurements, or judge a probe record"})
 	}
 }
 

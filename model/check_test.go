@@ -1,6 +1,7 @@
 package model
 
 import (
+	"errors"
 	"math"
 	"strings"
 	"testing"
@@ -98,6 +99,28 @@ func TestCheckAsksDryOrWetOnlyForHeating(t *testing.T) {
 	steps[2].Medium = Course{C: []float64{22}}
 	if found := Check(p, steps); found.Faults() != 1 {
 		t.Errorf("air of 22 °C after air of 3 °C: %v", found)
+	}
+}
+
+// Air that turns out warmer than the food, which its media alone do not show, is asked about while it is solved: the last medium of the
+// chill was warm, and the food is cold all the same.
+func TestSolveAsksDryOrWet(t *testing.T) {
+	p, steps := plain()
+	p.StartC, steps = 80, steps[1:]
+	steps[0].DurationS = 40000
+	steps[0].Medium = Course{Name: "air", TimesS: []float64{0, 3000, 40000}, C: []float64{70, 3, 3}}
+	warm := Step{Name: "warm", Stage: Reheat, DurationS: 5000, Exposure: Exposure{At: cell.Ref{Sheet: "Steps", Row: 9}, Surface: StillAir, Medium: Course{C: []float64{72}}}}
+	steps = append(steps, warm)
+	if found := Check(p, steps); len(found) > 0 {
+		t.Fatalf("the case is to be one that Check lets pass: %v", found)
+	}
+	var es cell.Errors
+	if _, err := Solve(p, steps, Options{}); !errors.As(err, &es) || es[0].At.Row != 9 || es[0].Field != "Surface" {
+		t.Errorf("%v", err)
+	}
+	steps[1].Wet = ptr(false)
+	if _, err := Solve(p, steps, Options{}); err != nil {
+		t.Error(err)
 	}
 }
 
@@ -210,6 +233,28 @@ func TestPropertiesAtTheMeanOfTheFood(t *testing.T) {
 	}
 	if got := slow.Spans[1].Props.KWmK / p.Food.Props(slow.Spans[1].PropsAtC).KWmK; math.Abs(got-0.9) > 1e-12 {
 		t.Errorf("conductivity factor %g", got)
+	}
+}
+
+// Where a step ends early, its properties are those of the food until then.
+func TestPropertiesOfAStepThatEndsEarly(t *testing.T) {
+	p, steps := plain()
+	p.Food.Composed = true
+	p.Food.Props = func(c float64) Properties { return Properties{KWmK: 0.46 + 0.0012*c, RhoKgM3: 1050, CJkgK: 3500 + 2*c} }
+	steps[0].DurationS, steps[0].UntilC = 9000, ptr(41.0)
+	h, err := Solve(p, steps, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	s := h.Sample(10)
+	low, high := math.Inf(1), math.Inf(-1)
+	for k, t := range s.TimesS {
+		if t <= h.Spans[0].EndS {
+			low, high = math.Min(low, s.Coldest[k]), math.Max(high, s.Hottest[k])
+		}
+	}
+	if want := (low + math.Min(high, 100)) / 2; math.Abs(h.Spans[0].PropsAtC-want) > 0.6 {
+		t.Errorf("properties at %.2f °C, mean of the food until %g s: %.2f °C", h.Spans[0].PropsAtC, h.Spans[0].EndS, want)
 	}
 }
 

@@ -5,6 +5,8 @@ import (
 	"fmt"
 	"math"
 	"slices"
+
+	"slowpoint/model/cell"
 )
 
 // Goals of the error estimate by number of axes, K: resolution is raised until the estimate is below.
@@ -30,6 +32,9 @@ func Solve(p Product, steps []Step, o Options) (*History, error) {
 	s.layOut()
 	for more := 0; ; more++ {
 		h := s.run(more)
+		if len(s.refused) > 0 {
+			return nil, s.refused
+		}
 		s.estimate(h, more)
 		if h.ErrorK <= goalK[s.used] || s.full(more) {
 			return h, nil
@@ -50,6 +55,7 @@ type solver struct {
 	sharp   [3]bool     // a film on the axis so strong that the surface all but jumps
 	chain   []*chainStep
 	main    field
+	refused cell.Errors // found while solving
 }
 
 // layOut finds the axes of the product.
@@ -219,24 +225,15 @@ func (s *solver) run(more int) *History {
 	lo, hi := s.product.StartC, s.product.StartC // of the food at the start of the step
 	for i := range s.steps {
 		span := Span{Step: &s.steps[i], StartS: t}
-		cs := s.ready(&span, axes, nd, lo, hi)
-		s.chain = append(s.chain, cs)
-		s.main = s.build(axes, nd, s.main)
-		h.field = s.main
-		end := t + cs.durS
-		if u := s.steps[i].UntilC; u != nil {
-			reached := false
-			cs.durS, reached = s.until(h, t, end, *u, s.steps[i].Stage.Heats)
-			span.Reached = &reached
-			if reached {
-				s.main.pop()
-				s.main.run(cs)
-			}
+		s.airQuestion(&s.steps[i], lo)
+		if len(s.refused) > 0 {
+			return nil
 		}
+		cs := s.step(h, &span, axes, nd, lo, hi)
 		t += cs.durS
 		span.EndS = t
 		h.Spans = append(h.Spans, span)
-		if i+1 < len(s.steps) && s.searches(&s.steps[i+1]) {
+		if i+1 < len(s.steps) && (s.searches(&s.steps[i+1]) || inAir(s.product.Shape, &s.steps[i+1])) {
 			lo, hi = h.body.range_(s.main.at(t))
 		}
 		if span.MediumFromC != nil && h.Bound == "" {
@@ -273,11 +270,66 @@ func (s *solver) build(axes [3]*axis, nd *nodes, f field) field {
 	return t
 }
 
-// ready decides the properties and films of the next step. The properties are those at the mean of the coldest and hottest
-// food in the step, counting anything above 100 °C as 100; lo and hi are the food's at its start.
-func (s *solver) ready(span *Span, axes [3]*axis, nd *nodes, lo, hi float64) *chainStep {
+// step runs the next step: to its end, or until the slowest place reaches its goal. What is taken at the mean of the food in the step
+// is taken again where the step ends early.
+func (s *solver) step(h *History, span *Span, axes [3]*axis, nd *nodes, lo, hi float64) *chainStep {
 	st := span.Step
-	cold, hot := lo, hi // first guess: the food comes all the way to its media
+	within := st.DurationS
+	for pass := 0; ; pass++ {
+		cs := s.ready(h.body, span, axes, nd, [2]float64{lo, hi}, within)
+		s.chain = append(s.chain, cs)
+		s.main = s.build(axes, nd, s.main)
+		h.field = s.main
+		if st.UntilC == nil {
+			return cs
+		}
+		durS, reached := s.until(h, span.StartS, span.StartS+cs.durS, *st.UntilC, st.Stage.Heats)
+		span.Reached = &reached
+		if !reached {
+			return cs
+		}
+		s.main.pop()
+		if pass == 2 || !s.searches(st) {
+			cs.durS = durS
+			s.main.run(cs)
+			return cs
+		}
+		s.chain = s.chain[:len(s.chain)-1]
+		within = durS
+	}
+}
+
+// inAir tells whether a step has air around the food.
+func inAir(shape *Shape, st *Step) bool {
+	for _, e := range exposures(shape, st) {
+		if e.Surface == StillAir || e.Surface == MovingAir {
+			return true
+		}
+	}
+	return false
+}
+
+// airQuestion refuses air that turns out to be warmer than the coldest place of the food, where dry or wet was not said, or wet was;
+// Check asks the same before anything is calculated, where the media alone show it.
+func (s *solver) airQuestion(st *Step, coldest float64) {
+	for _, e := range exposures(s.product.Shape, st) {
+		if e.Surface != StillAir && e.Surface != MovingAir {
+			continue
+		}
+		for _, c := range e.Medium.C {
+			if c > coldest+warmerK {
+				wetOrDry(&s.refused, e)
+				break
+			}
+		}
+	}
+}
+
+// ready decides the properties and films of the next step. The properties are those at the mean of the coldest and hottest
+// food in the first within seconds of the step, counting anything above 100 °C as 100; food is the range at its start, °C.
+func (s *solver) ready(body *body, span *Span, axes [3]*axis, nd *nodes, food [2]float64, within float64) *chainStep {
+	st := span.Step
+	cold, hot := food[0], food[1] // first guess: the food comes all the way to its media
 	for _, e := range exposures(s.product.Shape, st) {
 		for _, m := range s.raised(st, e, nil).C {
 			cold, hot = math.Min(cold, m), math.Max(hot, m)
@@ -285,17 +337,16 @@ func (s *solver) ready(span *Span, axes [3]*axis, nd *nodes, lo, hi float64) *ch
 	}
 	for try := 0; ; try++ {
 		mean := (math.Min(cold, 100) + math.Min(hot, 100)) / 2
-		cs := s.film(span, mean)
+		cs := s.film(span, mean, within)
 		if try == 2 || !s.searches(st) {
 			return cs
 		}
 		s.chain = append(s.chain, cs)
 		f := s.build(axes, nd, s.main)
 		s.chain = s.chain[:len(s.chain)-1]
-		body := newBody(s.kinds, s.radii, nd)
-		cold, hot = lo, hi
+		cold, hot = food[0], food[1]
 		for k := 1; k <= 8; k++ {
-			a, b := body.range_(f.at(span.StartS + cs.durS*float64(k*k)/64))
+			a, b := body.range_(f.at(span.StartS + within*float64(k*k)/64))
 			cold, hot = math.Min(cold, a), math.Max(hot, b)
 		}
 		if f == s.main {
@@ -317,13 +368,17 @@ func (s *solver) searches(st *Step) bool {
 	return false
 }
 
+// filmK is the largest difference between food and air at which a film is taken, K: the film of still air falls with it, and what
+// decides a chill or a reheat is its slow end.
+const filmK = 10
+
 // filmDepends tells whether the film depends on temperatures.
 func (e *Exposure) filmDepends() bool {
 	return (e.Surface == StillAir || e.Surface == MovingAir) && e.FilmW == nil
 }
 
-// film makes a step ready with properties and films at a mean temperature of the food.
-func (s *solver) film(span *Span, meanC float64) *chainStep {
+// film makes a step ready with properties and films at a mean temperature of the food in its first within seconds.
+func (s *solver) film(span *Span, meanC, within float64) *chainStep {
 	st := span.Step
 	span.Props, span.PropsAtC = s.props(meanC), meanC
 	span.Films = span.Films[:0]
@@ -341,7 +396,8 @@ func (s *solver) film(span *Span, meanC float64) *chainStep {
 		m := s.raised(st, e, span)
 		fc := filmCase{shape: s.product.Shape, size: s.product.Size, foodC: meanC, altitudeM: st.AltitudeM}
 		if e.filmDepends() {
-			fc.mediumC = m.meanC(st.DurationS)
+			fc.mediumC = m.meanC(within)
+			fc.foodC = fc.mediumC + math.Max(-filmK, math.Min(filmK, meanC-fc.mediumC))
 		}
 		if e.AirMS != nil {
 			fc.airMS = *e.AirMS
