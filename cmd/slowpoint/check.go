@@ -195,6 +195,7 @@ type runner struct {
 	rows     []report.Row
 	advice   []string // by row: the advice that is not met, a line each
 	files    []string
+	refused  []report.NotCalculated // found while calculating
 }
 
 // ahead is how many products a processor may be ahead of the one that is written.
@@ -240,6 +241,11 @@ func (r *runner) all() error {
 		return err
 	}
 	r.progress.Finish()
+	for _, n := range r.refused { // after the last product, since reports read the head
+		r.head.NotCalculated = append(r.head.NotCalculated, n)
+		r.head.Problems = append(r.head.Problems, n.Because...)
+		r.head.Products--
+	}
 	for _, w := range []func() error{js.Close, book.Close, text.Close} {
 		if err := w(); err != nil {
 			return err
@@ -265,7 +271,10 @@ func (r *runner) all() error {
 
 // done is one product after its calculation.
 type done struct {
-	product *report.Product
+	product *report.Product // nil: refused
+	refused cell.Errors     // why
+	at      cell.Ref
+	name    string
 	file    string
 	err     error
 }
@@ -308,7 +317,9 @@ func (r *runner) each(reports bool, take func(*done) error) error {
 		if d.err != nil {
 			return d.err
 		}
-		if err := take(d); err != nil {
+		if d.product == nil {
+			r.refuse(d, reports)
+		} else if err := take(d); err != nil {
 			return err
 		}
 		if reports {
@@ -318,16 +329,31 @@ func (r *runner) each(reports bool, take func(*done) error) error {
 	return r.ctx.Err()
 }
 
+// refuse notes a product that turned out not to be calculable; first tells whether it is met for the first time.
+func (r *runner) refuse(d *done, first bool) {
+	if !first {
+		return
+	}
+	for i, e := range d.refused {
+		d.refused[i] = r.plan.Locate(e)
+	}
+	r.refused = append(r.refused, report.NotCalculated{At: d.at, Product: d.name, Because: d.refused})
+}
+
 // one calculates, judges and reports one product.
 func (r *runner) one(i int, reports bool) (d *done) {
 	p := &r.plan.Products[i]
-	d = &done{file: r.files[i] + ".pdf"}
+	d = &done{file: r.files[i] + ".pdf", at: p.At, name: p.Name}
 	defer func() {
 		if fault := recover(); fault != nil {
 			d.err = fmt.Errorf("fault of the program at product %s: %v; please report it with the plan", p.Name, fault)
 		}
 	}()
 	d.product, d.err = r.calculate(p)
+	if errors.As(d.err, &d.refused) { // found while it was calculated
+		d.err = nil
+		return d
+	}
 	if d.err != nil || !reports || r.options.noPDF || r.options.onePDF {
 		return d
 	}

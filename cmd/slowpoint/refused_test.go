@@ -1,0 +1,45 @@
+package main
+
+import (
+	"bytes"
+	"os"
+	"path/filepath"
+	"strings"
+	"testing"
+)
+
+// A product that turns out not to be calculable while it is solved is told with its cell; the others are calculated, exit code 2.
+func TestRefusedWhileCalculated(t *testing.T) {
+	dir := filepath.Join(t.TempDir(), "plan")
+	if err := os.Mkdir(dir, 0o755); err != nil {
+		t.Fatal(err)
+	}
+	for name, text := range map[string]string{
+		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nHot one,A,slab,31,Mash,80\nSound,B,slab,31,Mash,80\n",
+		"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Source\nMash,0.52,1040,3600,invented\n",
+		"Steps": "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Course,Film coefficient (W/m²·K)\n" +
+			"A,chill,cool,700,film,,falling,27\nA,warm,reheat,90,still air,72,,\nB,chill,cool,700,film,3,,27\n",
+		"Courses": "Course,Time (min),Temperature (°C)\nfalling,0,70\nfalling,50,3\nfalling,700,3\n",
+		"Limits":  "Limit,Rule,Stage,Applies to,To (°C),Code,Clause,Edition\ncold,by the end,cool,all,8,invented,1,1\n",
+	} {
+		if err := os.WriteFile(filepath.Join(dir, name+".csv"), []byte(text), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+	var out, errs bytes.Buffer
+	code := run([]string{"check", dir, "--date", "2026-01-31"}, nil, &out, &errs)
+	all := out.String() + errs.String()
+	if code != exitInput || !strings.Contains(all, "dry or wet") || !strings.Contains(all, "Steps!J3") && !strings.Contains(all, "Steps row 3") {
+		t.Errorf("exit %d\n%s", code, all)
+	}
+	if !strings.Contains(out.String(), "MET            Sound") || !strings.Contains(all, "Hot one") {
+		t.Errorf("the other product is to be calculated:\n%s", all)
+	}
+	js, err := os.ReadFile(filepath.Join(dir+"-results", "results.json"))
+	if err != nil || !bytes.Contains(js, []byte(`"not_calculated"`)) || !bytes.Contains(js, []byte(`"Hot one"`)) {
+		t.Errorf("results.json: %v", err)
+	}
+	if _, err := os.Stat(filepath.Join(dir+"-results", "Hot_one.pdf")); err == nil {
+		t.Error("a report of a product that was not calculated")
+	}
+}
