@@ -1,6 +1,9 @@
 package rules
 
-import "strconv"
+import (
+	"math"
+	"strconv"
+)
 
 // Band is the time spent between two temperatures.
 var Band = &Kind{Name: "band", Unit: "min", Needs: [][]string{{"From"}, {"To"}, {"Time"}, {"Counting"}},
@@ -11,8 +14,11 @@ func judgeBand(v *view) Finding {
 	l := v.l
 	q := question{unit: "min", need: *l.TimeS / 60}
 	q.measure = func(p path, t tilt) outcome {
-		sp := p.stay(v.stages, between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK))
-		return v.exposed(sp, l.Counting, "band", t)
+		r := between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK)
+		sp := p.stay(v.stages, r)
+		o := v.exposed(sp, l.Counting, "band", t)
+		o.bad += v.depth(p, r, sp.counted(l.Counting).s, l.Counting)
+		return o
 	}
 	return v.judgePlaces(q)
 }
@@ -29,7 +35,7 @@ func (v *view) exposed(sp spent, c Counting, word string, t tilt) outcome {
 	o.start, o.end, o.at = when(was, sp.count)
 	switch {
 	case c == Once && sp.count > 1:
-		o.word, o.bad = map[string]string{"band": "band again"}[word], 1e5+was.s/60
+		o.word, o.bad, o.margin = map[string]string{"band": "band again"}[word], 1e5+was.s/60, math.NaN()
 		if o.word == "" {
 			o.word = "out again"
 		}

@@ -88,6 +88,7 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 	if open {
 		o := none(CannotTell, "cool not fallen")
 		o.holes = holes{"start": l.startWords()}
+		o.bad = neverBad + p.value(w.b) - *l.ToC
 		return o
 	}
 	if !ok {
@@ -101,7 +102,7 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 	o := none(NotMet, "cool late")
 	o.start, o.slow = start, true
 	if !cold.holds(q.c[last]) { // never down for good within the window
-		return v.coolOpen(o, w, w.b-start, t)
+		return v.coolOpen(o, q, w, t)
 	}
 	i := last
 	for i >= 0 && cold.holds(q.c[i]) {
@@ -119,11 +120,11 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 	}
 	o.word = "cool closed"
 	if took == 0 {
-		o.word = "cool at once"
+		o.word, o.bad = "cool at once", math.Min(0, v.coolExcess(q, w, start))
 	}
 	switch {
 	case end > w.stageTo+sameS:
-		o.word = "cool stage"
+		o.word, o.margin = "cool stage", math.Min(o.margin, w.stageTo-end)
 	case l.within(took, *l.TimeS):
 		o.verdict = Met
 	}
@@ -134,9 +135,9 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 }
 
 // coolOpen judges a window that ends before the place is down for good.
-func (v *view) coolOpen(o outcome, w window, ran float64, t tilt) outcome {
-	l := v.l
-	o.value, o.bad, o.margin, o.at = ran/60, ran/60, *l.TimeS-ran, w.b
+func (v *view) coolOpen(o outcome, q path, w window, t tilt) outcome {
+	l, ran := v.l, w.b-o.start
+	o.value, o.bad, o.margin, o.at = ran/60, neverBad+v.coolExcess(q, w, o.start), *l.TimeS-ran, w.b
 	if !t.rank {
 		up := 1
 		if !l.within(ran, *l.TimeS) {
@@ -147,7 +148,7 @@ func (v *view) coolOpen(o outcome, w window, ran float64, t tilt) outcome {
 	switch {
 	case !l.within(ran, *l.TimeS):
 	case w.b > w.stageTo+sameS:
-		o.word = "cool stage"
+		o.word, o.margin = "cool stage", math.Min(o.margin, w.stageTo-w.b)
 	default:
 		o.verdict, o.word, o.margin = CannotTell, "cool open", math.NaN()
 		if !w.last {
@@ -193,13 +194,17 @@ func (v *view) coolRoom(p path, w window) float64 {
 	if !ok {
 		return math.NaN()
 	}
-	due := math.Min(start+*v.l.TimeS, math.Min(w.b, w.stageTo))
-	q := p.in(w.interval)
-	top := p.value(due)
+	return -v.coolExcess(p.in(w.interval), w, start)
+}
+
+// coolExcess is how far above To the highest temperature lies from the allowed time on, K; q is the part of a path in the window.
+func (v *view) coolExcess(q path, w window, start float64) float64 {
+	due := math.Max(w.a, math.Min(start+*v.l.TimeS, math.Min(w.b, w.stageTo)))
+	top := q.value(due)
 	for i, t := range q.t {
 		if t > due {
 			top = math.Max(top, q.c[i])
 		}
 	}
-	return *v.l.ToC - top
+	return top - *v.l.ToC
 }

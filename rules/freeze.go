@@ -14,17 +14,21 @@ func judgeFreeze(v *view) Finding {
 			first, second = "freeze never", "freeze at once"
 		}
 		o := none(NotMet, first)
-		o.value, o.bad = 0, 0
-		o.margin = -*l.SecondS
+		o.value, o.margin = 0, -*l.SecondS
+		o.bad = neverBad - p.deepest(v.stages, l.coldSide(*l.FromC-t.errK))
 		for n, iv := range v.stages {
 			q := p.in(iv)
 			done, ok := q.reach(l.coldSide(*l.FromC-t.errK), iv.a, *l.TimeS)
 			if !ok {
 				continue
 			}
-			held := v.after(p, n, done, l.coldSide(*l.ToC-t.errK-t.ownK))
+			cold := l.coldSide(*l.ToC - t.errK - t.ownK)
+			held := v.after(p, n, done, cold)
 			o.word = second
 			o.value, o.bad, o.margin = held.s/60, -held.s/60, held.s-*l.SecondS
+			if held.s == 0 {
+				o.bad = -p.deepest(v.stages, cold)
+			}
 			o.start, o.end, o.at = done, held.to, held.to
 			o.holes = holes{"value": lasting(held.s, -1)}
 			if l.enough(held.s, *l.SecondS) {

@@ -48,7 +48,11 @@ func judgeLethality(v *view) Finding {
 		if l.TimeS == nil {
 			o.word = "lethality logs"
 		}
-		o.value, o.bad, o.margin, o.slow = best/per, -best/per, math.NaN(), true
+		o.value, o.bad, o.margin, o.slow = best/per, -math.Log10(best), math.NaN(), true
+		if best == 0 {
+			_, top := path{t: p.t, c: p.c}.mostOf(v.stages, 1)
+			o.bad = neverBad - top
+		}
 		if !t.rank {
 			o.holes = holes{"value": round(best/per, decimalsOf(best/per, q.unit), -1)}
 		}

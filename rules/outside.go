@@ -30,7 +30,7 @@ func judgeOutside(v *view) Finding {
 		}
 		sp := p.stay(v.stages, r)
 		o := none(NotMet, "outside")
-		o.value, o.bad = sp.total.s/60, sp.total.s/60
+		o.value, o.bad = sp.total.s/60, sp.total.s/60+v.depth(p, r, sp.total.s, Total)
 		o.holes = holes{"value": lasting(sp.total.s, 1)}
 		if sp.count > 0 {
 			o.start, o.end, o.at = sp.total.from, sp.lastEnd, sp.total.from
@@ -46,7 +46,6 @@ func judgeOutside(v *view) Finding {
 			}
 		}
 		o.verdict, o.word = Met, "outside never"
-		o.bad = -1e3
 		return o
 	}
 	return v.judgePlaces(q)

@@ -63,7 +63,10 @@ func (v *view) excursion(level, sign float64) question {
 		case strict:
 			out = atOrBelow(level + t.errK + t.ownK)
 		}
-		return v.exposed(p.stay(v.stages, out), c, word, t)
+		sp := p.stay(v.stages, out)
+		o := v.exposed(sp, c, word, t)
+		o.bad += v.depth(p, out, sp.counted(c).s, c)
+		return o
 	}
 	return q
 }
