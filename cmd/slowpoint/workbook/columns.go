@@ -21,6 +21,10 @@ type Column struct {
 	Unit     string         // the unit of the blank workbook, one of Quantity's; "" for words and bare numbers
 	Needed   bool           // the column must be there, and filled in every row
 	Least    Least          // which numbers are refused
+	Usual    *span          // outside it a number is used, with a warning; nil: any is usual
+	OfMedium *span          // Usual in a row that is about the surroundings (Where: medium)
+	Possible *span          // outside it a number is refused; nil: whatever Least allows
+	Slip     string         // what such a number most likely is, as a question
 	Choices  []string       // accepted words, for a drop-down list; nil: any words or a number
 	Free     bool           // Choices are suggestions: other words are accepted too
 	Help     string         // what to type, for the cell note and the manual
@@ -36,6 +40,40 @@ const (
 	Share                    // 0 … 100 %
 	UpToOne                  // more than 0, at most 1
 )
+
+// span is a range of numbers, ends included, in the unit that the program computes in.
+type span struct{ least, most float64 }
+
+// The spans are common practice, no source: wide enough for any food and kitchen, narrow enough to catch a number typed in the unit
+// of another heading.
+var (
+	usualSize, possibleSize         = &span{0.002, 1}, &span{1e-5, 10}     // m
+	usualStart, possibleStart       = &span{-30, 110}, &span{-273.15, 300} // °C
+	usualMedium, possibleMedium     = &span{-60, 350}, &span{-273.15, 600} // °C
+	usualLimit                      = &span{-273.15, 125}                  // °C
+	usualFilm, possibleFilm         = &span{0, 5000}, &span{0, 1e6}        // W/(m²·K)
+	usualSpeed, possibleSpeed       = &span{0, 15}, &span{0, 100}          // m/s
+	usualDuration                   = &span{0, 60 * 86400}                 // s
+	usualConduct, possibleConduct   = &span{0.1, 0.9}, &span{0.02, 3}      // W/(m·K)
+	usualDensity, possibleDensity   = &span{300, 1500}, &span{50, 3000}    // kg/m³
+	usualSpecific, possibleSpecific = &span{1500, 4300}, &span{500, 5000}  // J/(kg·K)
+	usualZ, possibleZ               = &span{3, 40}, &span{1, 100}          // K
+)
+
+const (
+	slipSize    = "is it cm or inches typed in a mm column, or the other way round?"
+	slipDegrees = "is it °F typed in a °C column?"
+	slipFilm    = "is it in another unit than the heading says, such as kW/m²·K?"
+	slipSpeed   = "is it ft/min or km/h typed in a m/s column?"
+	slipTime    = "is it seconds or minutes typed in a column of longer units?"
+	slipConduct = "is it in another unit than the heading says, such as mW/m·K or Btu/h·ft·°F?"
+	slipDensity = "is it g/cm³ typed in a kg/m³ column?"
+	slipHeat    = "is it kJ/kg·K typed in a J/kg·K column?"
+	slipZ       = "is it a temperature, or in another unit than the heading says?"
+)
+
+// outside tells whether a number lies outside a span; no number lies outside none.
+func (s *span) outside(x float64) bool { return s != nil && (x < s.least || x > s.most) }
 
 // Title is the heading of the blank workbook, with its unit: "Thickness (mm)".
 func (c *Column) Title() string {
@@ -104,11 +142,11 @@ const publishedSpeeds = "Take the lowest speed that you measured at the food, no
 func surroundings() []*Column {
 	return []*Column{
 		{Heading: "Surroundings", Needed: true, Choices: surfaceNames, Help: "what the food stands in"},
-		{Heading: "Temperature", Quantity: &unit.Temperature, Unit: "°C", Help: "of the surroundings; blank with a Course, and for insulated"},
+		{Heading: "Temperature", Quantity: &unit.Temperature, Unit: "°C", Usual: usualMedium, Possible: possibleMedium, Slip: slipDegrees, Help: "of the surroundings; blank with a Course, and for insulated"},
 		{Heading: "Course", Help: "a course of the sheet Courses, instead of one temperature"},
 		{Heading: "Temperature is", Choices: []string{"measured", "set-point"}, Help: "a set-point is not an air temperature; blank = set-point"},
-		{Heading: "Film coefficient", Quantity: &unit.Film, Unit: "W/m²·K", Least: Positive, Help: "heat taken or given by a square metre for each degree of difference; it stands for everything that happens at the surface. " + publishedFilms},
-		{Heading: "Air speed", Quantity: &unit.Speed, Unit: "m/s", Least: Positive, Help: "at the food, for moving air. " + publishedSpeeds},
+		{Heading: "Film coefficient", Quantity: &unit.Film, Unit: "W/m²·K", Usual: usualFilm, Possible: possibleFilm, Slip: slipFilm, Least: Positive, Help: "heat taken or given by a square metre for each degree of difference; it stands for everything that happens at the surface. " + publishedFilms},
+		{Heading: "Air speed", Quantity: &unit.Speed, Unit: "m/s", Usual: usualSpeed, Possible: possibleSpeed, Slip: slipSpeed, Least: Positive, Help: "at the food, for moving air. " + publishedSpeeds},
 		{Heading: "Relative humidity", Quantity: &unit.Percent, Unit: "%", Least: Share, Help: "of the air, as measured or set"},
 		{Heading: "Radiating temperature", Quantity: &unit.Temperature, Unit: "°C", Help: "of walls or elements that the food sees"},
 		{Heading: "Emissivity", Quantity: &unit.Number, Least: UpToOne, Help: "of the food's surface, more than 0 and at most 1"},
@@ -139,21 +177,21 @@ var Sheets = []*Sheet{
 		{Heading: "Batch", Help: "printed on the report"},
 		{Heading: "Process", Needed: true, Help: "a process of the sheet Steps"},
 		{Heading: "Shape", Needed: true, Choices: shapeNames, Help: "the shape that the product is calculated as"},
-		{Heading: "Thickness", Quantity: &unit.Length, Unit: "mm", Least: Positive, Help: "slab, bar, brick; along the axis of a spheroid"},
-		{Heading: "Width", Quantity: &unit.Length, Unit: "mm", Least: Positive, Help: "bar, brick"},
-		{Heading: "Length", Quantity: &unit.Length, Unit: "mm", Least: Positive, Help: "brick, short cylinder"},
-		{Heading: "Diameter", Quantity: &unit.Length, Unit: "mm", Least: Positive, Help: "cylinder, sphere, short cylinder, spheroid"},
+		{Heading: "Thickness", Quantity: &unit.Length, Unit: "mm", Usual: usualSize, Possible: possibleSize, Slip: slipSize, Least: Positive, Help: "slab, bar, brick; along the axis of a spheroid"},
+		{Heading: "Width", Quantity: &unit.Length, Unit: "mm", Usual: usualSize, Possible: possibleSize, Slip: slipSize, Least: Positive, Help: "bar, brick"},
+		{Heading: "Length", Quantity: &unit.Length, Unit: "mm", Usual: usualSize, Possible: possibleSize, Slip: slipSize, Least: Positive, Help: "brick, short cylinder"},
+		{Heading: "Diameter", Quantity: &unit.Length, Unit: "mm", Usual: usualSize, Possible: possibleSize, Slip: slipSize, Least: Positive, Help: "cylinder, sphere, short cylinder, spheroid"},
 		{Heading: "Volume", Quantity: &unit.Volume, Unit: "L", Least: Positive, Help: "stirred"},
 		{Heading: "Surface area", Quantity: &unit.Area, Unit: "m²", Least: Positive, Help: "stirred"},
 		{Heading: "Food", Help: "a food of the sheet Foods or a built-in one; blank for a layered slab"},
-		{Heading: "Start temperature", Quantity: &unit.Temperature, Unit: "°C", Needed: true, Help: "of the whole product when its first step begins"},
+		{Heading: "Start temperature", Quantity: &unit.Temperature, Unit: "°C", Usual: usualStart, Possible: possibleStart, Slip: slipDegrees, Needed: true, Help: "of the whole product when its first step begins"},
 		{Heading: "Note", Help: "printed on the report"},
 	}},
 	{Name: "Layers", Help: "The layers of a layered slab, from the top", Refused: "a layered slab cannot be calculated yet", Columns: []*Column{
 		{Heading: "Product", Needed: true, Help: "a product of the sheet Products"},
 		{Heading: "Layer", Quantity: &unit.Number, Needed: true, Least: Positive, Help: "1 = top"},
 		{Heading: "Food", Needed: true, Help: "a food of the sheet Foods or a built-in one"},
-		{Heading: "Thickness", Quantity: &unit.Length, Unit: "mm", Needed: true, Least: Positive, Help: "of this layer"},
+		{Heading: "Thickness", Quantity: &unit.Length, Unit: "mm", Usual: usualSize, Possible: possibleSize, Slip: slipSize, Needed: true, Least: Positive, Help: "of this layer"},
 		{Heading: "Contact resistance below", Quantity: &unit.Resistance, Unit: "m²K/W", Least: NotNegative, Help: "between this layer and the one below; 0 for perfect contact"},
 	}},
 	{Name: "Foods", Help: "The plan's own foods: a composition, or measured properties", Columns: []*Column{
@@ -166,9 +204,9 @@ var Sheets = []*Sheet{
 		{Heading: "Ash", Quantity: &unit.Percent, Unit: "%", Least: Share, Help: "by mass: minerals and salt"},
 		{Heading: "Air by volume", Quantity: &unit.Percent, Unit: "%", Least: Share, Help: "for a whipped or porous food; or a measured Density instead"},
 		{Heading: "At temperature", Quantity: &unit.Temperature, Unit: "°C", Help: "several rows of one food make a table"},
-		{Heading: "Conductivity", Quantity: &unit.Conductivity, Unit: "W/m·K", Least: Positive, Help: "thermal conductivity, instead of a composition, with Density and Specific heat"},
-		{Heading: "Density", Quantity: &unit.Density, Unit: "kg/m³", Least: Positive, Help: "of the whole food with its air; measured"},
-		{Heading: "Specific heat", Quantity: &unit.SpecificHeat, Unit: "J/kg·K", Least: Positive, Help: "instead of a composition, with Conductivity and Density"},
+		{Heading: "Conductivity", Quantity: &unit.Conductivity, Unit: "W/m·K", Usual: usualConduct, Possible: possibleConduct, Slip: slipConduct, Least: Positive, Help: "thermal conductivity, instead of a composition, with Density and Specific heat"},
+		{Heading: "Density", Quantity: &unit.Density, Unit: "kg/m³", Usual: usualDensity, Possible: possibleDensity, Slip: slipDensity, Least: Positive, Help: "of the whole food with its air; measured"},
+		{Heading: "Specific heat", Quantity: &unit.SpecificHeat, Unit: "J/kg·K", Usual: usualSpecific, Possible: possibleSpecific, Slip: slipHeat, Least: Positive, Help: "instead of a composition, with Conductivity and Density"},
 		{Heading: "Freezing point", Quantity: &unit.Temperature, Unit: "°C", Help: "where ice begins to form; needed where food gets near 0 °C"},
 		{Heading: "Water activity", Quantity: &unit.Number, Least: UpToOne, Help: "more than 0 and at most 1; kept for wet surfaces"},
 		{Heading: "Flows", Choices: flowNames, Help: "a liquid left still is not conduction; blank = no"},
@@ -179,7 +217,7 @@ var Sheets = []*Sheet{
 		{Heading: "Product", Help: "only for a row that replaces the process's row of that Step for one product"},
 		{Heading: "Step", Needed: true, Help: "a name of its own within the process"},
 		{Heading: "Stage", Needed: true, Choices: stageNames, Help: "what the step is for; limits name stages"},
-		{Heading: "Duration", Quantity: &unit.Duration, Unit: "min", Needed: true, Least: Positive, Help: "the longest that the step may last"},
+		{Heading: "Duration", Quantity: &unit.Duration, Unit: "min", Usual: usualDuration, Slip: slipTime, Needed: true, Least: Positive, Help: "the longest that the step may last"},
 		{Heading: "Until slowest point reaches", Quantity: &unit.Temperature, Unit: "°C", Help: "the step ends when the coldest place (cook, reheat, thaw, hold hot) or the hottest place (other stages) reaches this, at the latest after Duration"},
 	}, surroundings(), []*Column{
 		{Heading: "Equipment", Help: "printed on the report"},
@@ -195,7 +233,7 @@ var Sheets = []*Sheet{
 	{Name: "Courses", Help: "Temperatures of surroundings that change in time: straight lines between rows", Columns: []*Column{
 		{Heading: "Course", Needed: true, Help: "its name, as Steps and Faces use it; the same in each of its rows"},
 		{Heading: "Time", Quantity: &unit.Duration, Unit: "min", Needed: true, Least: NotNegative, Help: "from the start of the step; the first row is 0"},
-		{Heading: "Temperature", Quantity: &unit.Temperature, Unit: "°C", Needed: true, Help: "of the surroundings at that time; straight lines between the rows"},
+		{Heading: "Temperature", Quantity: &unit.Temperature, Unit: "°C", Usual: usualMedium, Possible: possibleMedium, Slip: slipDegrees, Needed: true, Help: "of the surroundings at that time; straight lines between the rows"},
 		{Heading: "Relative humidity", Quantity: &unit.Percent, Unit: "%", Least: Share, Help: "of the air at that time"},
 	}},
 	{Name: "Limits", Help: "What has to be met: your own entry, with the code that says so", Columns: []*Column{
@@ -204,8 +242,8 @@ var Sheets = []*Sheet{
 		{Heading: "Stage", Choices: stageNames, Free: true, Help: "blank = the whole chain; several joined by + (cook + rest); for delay a pair (cook > cool)"},
 		{Heading: "Applies to", Needed: true, Help: "all, family: NAME, or a product"},
 		{Heading: "Where", Choices: whereWords, Free: true, Help: "or the name of a row of Points; blank = every point"},
-		{Heading: "From", Quantity: &unit.Temperature, Unit: "°C", Help: "hold, stay above: the temperature to be kept or reached. cool: where the clock starts. band, outside: the lower edge. lethality: nothing is credited below it"},
-		{Heading: "To", Quantity: &unit.Temperature, Unit: "°C", Help: "cool, heat: the temperature to be reached. stay below: the highest allowed. band, outside: the upper edge"},
+		{Heading: "From", Quantity: &unit.Temperature, Unit: "°C", Usual: usualLimit, OfMedium: usualMedium, Slip: slipDegrees, Help: "hold, stay above: the temperature to be kept or reached. cool: where the clock starts. band, outside: the lower edge. lethality: nothing is credited below it"},
+		{Heading: "To", Quantity: &unit.Temperature, Unit: "°C", Usual: usualLimit, OfMedium: usualMedium, Slip: slipDegrees, Help: "cool, heat: the temperature to be reached. stay below: the highest allowed. band, outside: the upper edge"},
 		{Heading: "Time", Quantity: &unit.Duration, Unit: "min", Least: NotNegative, Help: "0 = reached once"},
 		{Heading: "Second time", Quantity: &unit.Duration, Unit: "min", Least: NotNegative, Help: "heat: how long it must then stay. freeze: the time of the second phase"},
 		{Heading: "Clock starts", Choices: []string{"crossing"}, Free: true, Help: "crossing, crossing of N °C, stage start: NAME, stage end: NAME"},
@@ -213,8 +251,8 @@ var Sheets = []*Sheet{
 		{Heading: "Compare", Choices: compareWords, Help: "for temperatures; blank = the rule's own"},
 		{Heading: "Compare time", Choices: compareWords, Help: "blank = at least for a needed time, at most for an allowed one"},
 		{Heading: "Reference temperature", Quantity: &unit.Temperature, Unit: "°C", Help: "lethality: the temperature that the equivalent time is told at"},
-		{Heading: "z", Quantity: &unit.Difference, Unit: "°C difference", Least: Positive, Help: "lethality: the difference that changes the rate tenfold; a difference, not a temperature"},
-		{Heading: "z above the reference temperature", Quantity: &unit.Difference, Unit: "°C difference", Least: Positive, Help: "lethality: z above the reference temperature, where the code gives another one"},
+		{Heading: "z", Quantity: &unit.Difference, Unit: "°C difference", Usual: usualZ, Possible: possibleZ, Slip: slipZ, Least: Positive, Help: "lethality: the difference that changes the rate tenfold; a difference, not a temperature"},
+		{Heading: "z above the reference temperature", Quantity: &unit.Difference, Unit: "°C difference", Usual: usualZ, Possible: possibleZ, Slip: slipZ, Least: Positive, Help: "lethality: z above the reference temperature, where the code gives another one"},
 		{Heading: "D", Quantity: &unit.Duration, Unit: "min", Least: Positive, Help: "time for one decimal reduction at the reference temperature"},
 		{Heading: "Log reductions", Quantity: &unit.Number, Least: Positive, Help: "lethality: needed decimal reductions, with D"},
 		{Heading: "Allowance", Quantity: &unit.Difference, Unit: "°C difference", Least: NotNegative, Help: "falling: the largest rise that still counts as falling; a difference"},

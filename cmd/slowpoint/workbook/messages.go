@@ -50,6 +50,8 @@ var (
 	notShare     = saying{"is not between 0 and 100 %", "type a percentage from 0 to 100"}
 	notUpToOne   = saying{"is not between 0 and 1", "{1} is more than 0 and at most 1"}
 	belowZeroK   = saying{"is below the absolute zero", "check the number and its unit"}
+	impossible   = saying{"is read as {1}, which cannot be: possible is {2}, usual {3}", "check the number and its unit{4}"}
+	unusual      = saying{"is read as {1}, which is unusual: usual is {2}", "check the number and its unit{3}"}
 	isDate       = saying{"is formatted as a date", "type {1}, and give the cell a number format"}
 	isTime       = saying{"is formatted as a time", "type {1}, and give the cell a number format"}
 	isPercent    = saying{"is formatted as a percentage", "type {1}, and give the cell a number format"}

@@ -566,8 +566,51 @@ func (l *line) value(heading string) *unit.Value {
 		l.fault(heading, v.Typed, *s, args...)
 		return nil
 	}
+	if !l.likely(c, v) {
+		return nil
+	}
 	l.note(heading, v.Typed, short(v.Computed)+spaced(c.Quantity.Units[0].Name()), "")
 	return &v
+}
+
+// likely holds a number against what is usual and what is possible; false if it cannot be.
+func (l *line) likely(c *Column, v unit.Value) bool {
+	usual, slip := c.Usual, ""
+	if c.OfMedium != nil && key(l.entry("Where").text) == "medium" {
+		usual = c.OfMedium
+	}
+	if strings.HasSuffix(v.Typed, spaced(c.Unit)) {
+		slip = ": " + c.Slip
+	}
+	switch {
+	case c.Possible.outside(v.Computed):
+		l.fault(c.Heading, v.Typed, impossible, c.shown(v.Computed), c.between(c.Possible), c.between(c.Usual), slip)
+		return false
+	case usual.outside(v.Computed):
+		l.remark(cell.Warning, c.Heading, v.Typed, unusual, c.shown(v.Computed), c.between(usual), slip)
+	}
+	return true
+}
+
+// shown words a computed number in the unit of the blank workbook.
+func (c *Column) shown(x float64) string {
+	u := c.Quantity.Unit(c.Unit)
+	return strconv.FormatFloat(u.Out(x), 'g', 7, 64) + spaced(u.Name())
+}
+
+// between words a span: "2 to 1000 mm"; without its lower end where that is nothing in itself.
+func (c *Column) between(s *span) string {
+	if s.least == 0 || s.least == -273.15 {
+		return "at most " + c.whole(s.most)
+	}
+	u := c.Quantity.Unit(c.Unit)
+	return strings.TrimSuffix(c.whole(s.least), spaced(u.Name())) + " to " + c.whole(s.most)
+}
+
+// whole is shown without exponents, for the round ends of spans.
+func (c *Column) whole(x float64) string {
+	u := c.Quantity.Unit(c.Unit)
+	return strconv.FormatFloat(math.Round(u.Out(x)*1e6)/1e6, 'f', -1, 64) + spaced(u.Name())
 }
 
 // convert makes a value of a cell, by its kind and its number format.
