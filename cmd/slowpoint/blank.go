@@ -5,6 +5,8 @@ import (
 	"fmt"
 	"io"
 	"os"
+	"path/filepath"
+	"strings"
 
 	"github.com/spf13/cobra"
 
@@ -17,6 +19,9 @@ func blankCommand() *cobra.Command {
 		Use: "blank FILE.xlsx", Short: "Write an empty plan workbook with headings, units, notes and lists to choose from",
 		Example: "  slowpoint blank my-plan.xlsx\n  slowpoint blank --demo demo.xlsx", Args: cobra.ExactArgs(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
+			if !strings.EqualFold(filepath.Ext(args[0]), ".xlsx") {
+				return &failure{exitInput, fmt.Errorf("%s: a workbook is written, so the name must end in .xlsx", args[0])}
+			}
 			if err := newFile(args[0]); err != nil {
 				return err
 			}

@@ -34,7 +34,7 @@ func checkCommand() *cobra.Command {
 	var o checkOptions
 	cmd := &cobra.Command{
 		Use: "check [PLAN]", Short: "Calculate a plan, judge its limits and write the report; without PLAN, the built-in demo",
-		Example: "  slowpoint check\n  slowpoint check plan.xlsx --out results", Args: cobra.MaximumNArgs(1),
+		Example: "  slowpoint check\n  slowpoint check plan.xlsx --out results", Args: onePlan(0),
 		RunE: func(cmd *cobra.Command, args []string) error { return check(cmd, args, &o) },
 	}
 	f := cmd.Flags()
@@ -133,6 +133,9 @@ func headOf(plan *workbook.Plan, o *checkOptions) (*report.Head, error) {
 	if h.Paper == "" {
 		h.Paper = "A4"
 	}
+	if o.onePDF && o.noPDF {
+		return nil, &failure{exitInput, errors.New("--one-pdf and --no-pdf exclude each other: leave one out")}
+	}
 	every, err := time.ParseDuration(o.every)
 	if err != nil || every < time.Second {
 		return nil, &failure{exitInput, fmt.Errorf("--every %q: expected a duration of at least 1s, such as 60s or 5m", o.every)}
@@ -164,15 +167,20 @@ func keepOnly(plan *workbook.Plan, only []string) error {
 		names = append(names, n.Product)
 	}
 	for _, o := range only {
-		if !slices.ContainsFunc(names, func(n string) bool { return strings.EqualFold(n, o) }) {
+		if !slices.ContainsFunc(names, func(n string) bool { return sameName(n, o) }) {
 			return &failure{exitInput, fmt.Errorf("--only %q: the plan has no product of that name; it has %s", o, strings.Join(names[:min(len(names), 20)], ", "))}
 		}
 	}
 	keep := func(n string) bool {
-		return slices.ContainsFunc(only, func(o string) bool { return strings.EqualFold(n, o) })
+		return slices.ContainsFunc(only, func(o string) bool { return sameName(n, o) })
 	}
 	plan.Products = slices.DeleteFunc(plan.Products, func(p workbook.Product) bool { return !keep(p.Name) })
 	return nil
+}
+
+// sameName compares names without regard to case and blanks.
+func sameName(a, b string) bool {
+	return strings.EqualFold(strings.Join(strings.Fields(a), " "), strings.Join(strings.Fields(b), " "))
 }
 
 // progress is a bar on a terminal and nothing elsewhere.
@@ -367,7 +375,7 @@ func (r *runner) one(i int, reports bool) (d *done) {
 func (r *runner) tell(w io.Writer) {
 	const indent = "               "
 	for _, n := range r.head.NotCalculated[:min(len(r.head.NotCalculated), most)] {
-		fmt.Fprintf(w, "%-14s %s\n%serror at %s\n", "NOT CALCULATED", n.Product, indent, faultCells(n.Because))
+		fmt.Fprintf(w, "%-14s %s\n%s%s\n", "NOT CALCULATED", n.Product, indent, firstFault(n.Because))
 	}
 	order := make([]int, len(r.rows))
 	for i := range order {
@@ -397,18 +405,21 @@ func (r *runner) tell(w io.Writer) {
 	fmt.Fprintf(w, "\n%s\nCalculated from the inputs, not measured; your food authority decides.\nResults in %s\n", r.counts(), r.folder)
 }
 
-// faultCells lists the cells of the first errors; what they are is told on standard error.
-func faultCells(es cell.Errors) string {
-	var cells []string
+// firstFault is the first error of a product that was not calculated, and how many more it has.
+func firstFault(es cell.Errors) string {
+	text, more := "", -1
 	for _, e := range es {
-		if e.Level == cell.Fault && !slices.Contains(cells, e.At.String()) {
-			cells = append(cells, e.At.String())
+		if e.Level != cell.Fault {
+			continue
+		}
+		if more++; more == 0 {
+			text = e.Error()
 		}
 	}
-	if len(cells) > 3 {
-		return fmt.Sprintf("%s and %d more", strings.Join(cells[:3], ", "), len(cells)-3)
+	if more > 0 {
+		text += fmt.Sprintf(" (and %s more)", count(more, "error"))
 	}
-	return strings.Join(cells, ", ")
+	return text
 }
 
 // counts says how many products have which verdict.

@@ -39,7 +39,11 @@ func foodsCommand() *cobra.Command {
 				fmt.Fprintf(out, "  source: %s\n", f.Source)
 			}
 			if n == 0 {
-				return &failure{exitInput, fmt.Errorf("no built-in food has %q in its name; nearest: %s", args[0], strings.Join(food.Nearest(args[0]), ", "))}
+				near := strings.Join(food.Nearest(args[0]), ", ")
+				if near == "" {
+					near = "none is near; slowpoint foods lists all"
+				}
+				return &failure{exitInput, fmt.Errorf("no built-in food has %q in its name; nearest: %s", args[0], near)}
 			}
 			fmt.Fprintf(out, "\n%s. Properties come from composition (Choi & Okos 1986, conductivity by Levy 1981) and scatter by about ±15 %% in conductivity.\n", count(n, "food"))
 			return nil

@@ -1,6 +1,7 @@
 package main
 
 import (
+	"errors"
 	"fmt"
 	"io"
 
@@ -13,7 +14,7 @@ import (
 func readCommand() *cobra.Command {
 	return &cobra.Command{
 		Use: "read PLAN", Short: "Say what is understood of a plan and everything that is wrong with it; calculate nothing",
-		Example: "  slowpoint read plan.xlsx", Args: cobra.ExactArgs(1),
+		Example: "  slowpoint read plan.xlsx", Args: onePlan(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			plan, err := workbook.Read(args[0])
 			if err != nil {
@@ -26,6 +27,19 @@ func readCommand() *cobra.Command {
 			}
 			return nil
 		},
+	}
+}
+
+// onePlan takes at most one name, and least at least; a name with blanks comes apart where it is not quoted.
+func onePlan(least int) cobra.PositionalArgs {
+	return func(_ *cobra.Command, args []string) error {
+		switch {
+		case len(args) < least:
+			return &failure{exitInput, errors.New("name the plan: a workbook (.xlsx) or a folder of CSV files")}
+		case len(args) > 1:
+			return &failure{exitInput, fmt.Errorf("one plan at a time, and %d names were given: put quotes around a name with blanks, as \"my plan.xlsx\"", len(args))}
+		}
+		return nil
 	}
 }
 
