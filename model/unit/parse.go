@@ -310,3 +310,17 @@ func Evidence(text string) Decimal {
 	}
 	return Unsure
 }
+
+// Ambiguous tells whether the sign in the number of a typed text may stand before the tenths or between thousands: 1,500.
+func Ambiguous(text string) bool {
+	s := tidy(text)
+	if fraction.MatchString(s) || vulgar.MatchString(s) {
+		return false
+	}
+	m := decimal.FindStringSubmatch(s)
+	if m == nil {
+		return false
+	}
+	_, ambiguous := signs(m[2])
+	return ambiguous
+}

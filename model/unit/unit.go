@@ -98,7 +98,7 @@ var (
 		{Names: []string{"W/m²·K", "W/m2K", "W/(m2 K)", "W m-2 K-1", "W/m²°C", "W/m²/K"}},
 		{Names: []string{"Btu/h·ft²·°F", "Btu/h/ft2/F", "BTU/hr ft2 F"}, Scale: 5.678263}}} // NIST SP 811 (2008) app. B.8
 	Speed = Quantity{"speed", []Unit{
-		{Names: []string{"m/s", "m s-1"}}, {Names: []string{"ft/min", "fpm"}, Scale: 0.00508}, {Names: []string{"km/h"}, Per: 3.6}}}
+		{Names: []string{"m/s", "m s-1"}}, {Names: []string{"ft/min", "fpm"}, Scale: 0.00508}, {Names: []string{"ft/s", "fps", "ft s-1"}, Scale: 0.3048}, {Names: []string{"km/h"}, Per: 3.6}}}
 	Conductivity = Quantity{"conductivity", []Unit{
 		{Names: []string{"W/m·K", "W/mK", "W/(m K)", "W m-1 K-1", "W/m°C", "W/m/K"}},
 		{Names: []string{"Btu/h·ft·°F", "BTU/hr ft F"}, Scale: 1.730735}}} // NIST SP 811 (2008) app. B.8

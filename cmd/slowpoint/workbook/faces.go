@@ -35,6 +35,7 @@ func (r *reader) readFaces() {
 			f.course = r.exposure(l, &f.Exposure, 0)
 			if procName != "" && len(r.unread["Steps"]) == 0 {
 				l.fault("Process", procName, processUnknown, r.offer(procName, r.processNames))
+				r.astray(procName, prodName, l.because)
 			}
 			continue
 		}
@@ -57,6 +58,21 @@ func (r *reader) readFaces() {
 	}
 }
 
+// astray refuses whom a row with an unknown process may concern: the product that it names, else the products of the process whose name
+// is near, else all of them.
+func (r *reader) astray(procName, prodName string, es cell.Errors) {
+	if p := r.byName[key(prodName)]; p != nil {
+		p.suffer(es)
+		return
+	}
+	near := r.near(procName, r.processNames)
+	for _, p := range r.products {
+		if near == "" || key(p.Process) == key(near) {
+			p.suffer(es)
+		}
+	}
+}
+
 // hang puts a face on its step, for all products of the process or for one.
 func (r *reader) hang(l *line, pr *process, s *step, f *face, prodName string) {
 	if prodName == "" {
@@ -71,6 +87,7 @@ func (r *reader) hang(l *line, pr *process, s *step, f *face, prodName string) {
 	switch {
 	case p == nil:
 		l.fault("Product", prodName, productUnknown, r.offer(prodName, r.productNames))
+		r.concern(pr, "", l.because) // whose row it is is not known: without it any product of the process may be wrong
 		return
 	case key(p.Process) != key(pr.name):
 		l.fault("Product", prodName, otherProcess, strconv.Quote(p.Process))

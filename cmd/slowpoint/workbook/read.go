@@ -65,6 +65,7 @@ type reader struct {
 	unread   map[string]cell.Errors // why a sheet, or a part of it, could not be read
 	ignore   map[string]bool        // headings of the item Ignore columns, by key
 	decimal  unit.Decimal
+	shownBy  cell.Ref               // the cell that shows the decimal sign; the zero Ref if the sheet Plan says it
 	formulas map[cell.Ref]*formulas // by sheet and column
 	inOrder  []*formulas
 	offers   int // of names for misspelt ones
@@ -338,14 +339,10 @@ func (r *reader) decimalSign() {
 	}
 	var first [3]cell.Ref
 	var typed [3]string
-	weak := unit.Unsure
 	for _, s := range Sheets {
 		g := r.grids[s.Name]
 		if g == nil || g.refused != "" {
 			continue
-		}
-		if g.csv && g.commas {
-			weak = unit.Point // a comma between the cells is none within a number, unless quoted
 		}
 		i, _ := findHeader(g, s)
 		if i < 0 {
@@ -373,11 +370,9 @@ func (r *reader) decimalSign() {
 	case point && comma:
 		r.add(decimalMixed.problem(first[unit.Comma], cell.Warning, "", typed[unit.Comma], "comma", first[unit.Point].String(), "point"))
 	case point:
-		r.decimal = unit.Point
+		r.decimal, r.shownBy = unit.Point, first[unit.Point]
 	case comma:
-		r.decimal = unit.Comma
-	default:
-		r.decimal = weak
+		r.decimal, r.shownBy = unit.Comma, first[unit.Comma]
 	}
 }
 

@@ -126,6 +126,7 @@ func (r *reader) stepOfProduct(l *line, pr *process, s *step, name string) {
 	switch {
 	case p == nil:
 		l.fault("Product", name, productUnknown, r.offer(name, r.productNames))
+		r.concern(pr, "", l.because) // whose row it is is not known: without it any product of the process may be wrong
 		return
 	case key(p.Process) != key(pr.name):
 		l.fault("Product", name, otherProcess, strconv.Quote(p.Process))

@@ -622,6 +622,10 @@ func (l *line) convert(heading string, e *entry, c *Column, u *unit.Unit) (unit.
 			l.fault(heading, e.text, asFound, m.Says, m.Mend)
 			return v, false
 		}
+		if !l.r.shownBy.IsZero() && unit.Ambiguous(e.text) {
+			sign := map[unit.Decimal]string{unit.Point: "point", unit.Comma: "comma"}[l.r.decimal]
+			l.remark(cell.Note, heading, e.text, readByEvidence, short(v.Computed)+spaced(q.Units[0].Name()), sign, l.r.shownBy.String())
+		}
 		return v, true
 	}
 	x, err := strconv.ParseFloat(e.text, 64)
