@@ -1,6 +1,10 @@
 package rules
 
-import "math"
+import (
+	"math"
+
+	"slowpoint/model"
+)
 
 // CoolWithin is a cooling window: from the clock to To within Time.
 var CoolWithin = &Kind{Name: "cool", Unit: "min", Needs: [][]string{{"To"}, {"Time"}, {"Clock starts"}},
@@ -124,7 +128,8 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 	}
 	switch {
 	case end > w.stageTo+sameS:
-		o.word, o.margin = "cool stage", math.Min(o.margin, w.stageTo-end)
+		o.word, o.margin = "cool stage later", math.Min(o.margin, w.stageTo-end)
+		v.afterStage(&o, q, w, end, 1, t)
 	case l.within(took, *l.TimeS):
 		o.verdict = Met
 	}
@@ -149,6 +154,7 @@ func (v *view) coolOpen(o outcome, q path, w window, t tilt) outcome {
 	case !l.within(ran, *l.TimeS):
 	case w.b > w.stageTo+sameS:
 		o.word, o.margin = "cool stage", math.Min(o.margin, w.stageTo-w.b)
+		v.afterStage(&o, q, w, w.b, 1, t)
 	default:
 		o.verdict, o.word, o.margin = CannotTell, "cool open", math.NaN()
 		if !w.last {
@@ -207,4 +213,22 @@ func (v *view) coolExcess(q path, w window, start float64) float64 {
 		}
 	}
 	return top - *v.l.ToC
+}
+
+// afterStage fills in what a place was at when the named stage ended, and the stages that lie between that and a later instant.
+// up is the side to which the temperature is rounded; q is the part of a path in the window.
+func (v *view) afterStage(o *outcome, q path, w window, until float64, up int, t tilt) {
+	if t.rank {
+		return
+	}
+	o.holes["left"] = v.l.degrees(q.value(w.stageTo), up)
+	names := v.stageNames()
+	seen := map[*model.Stage]bool{}
+	for _, r := range v.runs {
+		if r.a >= w.stageTo-sameS && r.a < until && !seen[r.stage] && !named(v.l.Stages, r.stage) {
+			seen[r.stage] = true
+			names += " + " + r.stage.Name
+		}
+	}
+	o.holes["wider"] = names
 }

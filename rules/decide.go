@@ -99,7 +99,13 @@ func (v *view) judgePlaces(q question) Finding {
 		f.PlaceName = s.name
 	}
 	if f.Verdict != NotApplicable {
-		f.MarginK = finite(v.room(s, q, cs))
+		least, at := v.room(s, q, cs)
+		f.MarginK = finite(least)
+		if at != nil && f.MarginK != nil && f.Place != nil && !near(*at, *f.Place) {
+			if name := v.placeName(*at); name != f.PlaceName {
+				f.Notes = append(f.Notes, say("note margin place", holes{"place": name}))
+			}
+		}
 	} else if c, tail, ok := v.mayApply(q, cs); ok {
 		f = v.finding(c.nominal, q)
 		f.Verdict = CannotTell
@@ -341,8 +347,8 @@ func (v *view) shortlist(spots []int, q question, t tilt) []int {
 	return out
 }
 
-// room is the smallest margin in K over all places.
-func (v *view) room(s scope, q question, cs []candidate) float64 {
+// room is the smallest margin in K over all places, and the place that has it.
+func (v *view) room(s scope, q question, cs []candidate) (float64, *model.Place) {
 	margin := func(p path, least float64) float64 {
 		if q.room != nil {
 			return q.room(p)
@@ -356,8 +362,12 @@ func (v *view) room(s scope, q question, cs []candidate) float64 {
 			least = math.Min(least, r)
 		}
 	}
-	for _, c := range cs {
-		take(margin(c.path, math.Inf(1)))
+	var where *model.Place
+	for i := range cs {
+		before := least
+		if take(margin(cs[i].path, math.Inf(1))); least < before-0.002 {
+			where = &cs[i].place
+		}
 	}
 	at := -1
 	rough := v.c.rough != nil && len(s.spots) >= manySpots
@@ -372,18 +382,18 @@ func (v *view) room(s scope, q question, cs []candidate) float64 {
 	}
 	if at >= 0 && !v.h.Recorded { // a spot that is not among the candidates decides: its exact course
 		if r := margin(v.c.path(v.c.spots[at].Place), math.Inf(1)); !math.IsNaN(r) {
-			least = r
-			for _, c := range cs {
-				if r := margin(c.path, math.Inf(1)); r < least {
-					least = r
+			least, where = r, &v.c.spots[at].Place
+			for i := range cs {
+				if r := margin(cs[i].path, math.Inf(1)); r < least {
+					least, where = r, &cs[i].place
 				}
 			}
 		}
 	}
 	if !any {
-		return math.NaN()
+		return math.NaN(), nil
 	}
-	return least
+	return least, where
 }
 
 // maybe tells by its rough course whether a spot may have a margin below least.

@@ -66,6 +66,7 @@ func (v *view) heatWindow(p path, w window, t tilt) outcome {
 		case !l.within(ran, *l.TimeS):
 		case w.b > w.stageTo+sameS:
 			o.word, o.margin = "heat stage", math.Min(o.margin, w.stageTo-w.b)
+			v.afterStage(&o, q, w, w.b, -1, t)
 		default:
 			o.verdict, o.word, o.margin = CannotTell, "heat open", math.NaN()
 		}
@@ -80,7 +81,8 @@ func (v *view) heatWindow(p path, w window, t tilt) outcome {
 	}
 	switch {
 	case done > w.stageTo+sameS:
-		o.word, o.margin = "heat stage", math.Min(o.margin, w.stageTo-done)
+		o.word, o.margin = "heat stage later", math.Min(o.margin, w.stageTo-done)
+		v.afterStage(&o, q, w, done, -1, t)
 	case l.within(took, *l.TimeS):
 		o.verdict = Met
 	}

@@ -125,3 +125,55 @@ func TestOnlyIdleLimits(t *testing.T) {
 		t.Errorf("%v: %s", j.Verdict, j.Why)
 	}
 }
+
+// TestStageThatEndsFirst says what the place was at when the named stage ended, and when it was down.
+func TestStageThatEndsFirst(t *testing.T) {
+	cool := Limit{Kind: CoolWithin, FromC: c(60), ToC: c(5), TimeS: min_(360), Clock: crossing, Stages: st(model.Cool)}
+	heat := Limit{Kind: HeatWithin, ToC: c(70), TimeS: min_(120), Clock: Clock{Start: model.Reheat}, Stages: st(model.Reheat)}
+	for _, x := range []struct {
+		name, spans, course string
+		l                   Limit
+		says                []string
+		lacking             float64 // min
+	}{
+		{"down in the store", "cook 0-60, cool 60-160, store 160-400", "0:5 60:70 70:60 160:10 260:5 400:4", cool,
+			[]string{"still at 10 °C when the stage cool ended", "down to 5 °C only 190 min from 60 °C", "as cool + store."}, -100},
+		{"never down", "cook 0-60, cool 60-160, store 160-260", "0:5 60:70 70:60 160:10 260:6", cool,
+			[]string{"was at 10 °C when the stage cool ended", "not down to 5 °C for good later either"}, -100},
+		{"hot while standing", "reheat 0-60, rest 60-100", "0:5 60:60 80:70 100:65", heat,
+			[]string{"only at 60 °C when the stage reheat ended", "reached 70 °C after 80 min", "as reheat + rest."}, -20},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			f := one(t, x.l, record(t, x.spans, x.course))
+			for _, w := range x.says {
+				if f.Verdict != NotMet || !strings.Contains(f.Why, w) {
+					t.Errorf("%v, %q is missing: %s", f.Verdict, w, f.Why)
+				}
+			}
+			if f.MarginS != nil {
+				lacks := *f.MarginS / 60
+				closeTo(t, "lacking", &lacks, x.lacking, 0.01)
+			} else {
+				t.Error("no margin")
+			}
+		})
+	}
+}
+
+// TestStagesInTheSentence names the stages of a time that was spent in some of them only.
+func TestStagesInTheSentence(t *testing.T) {
+	l := Limit{Kind: Band, FromC: c(5), ToC: c(60), TimeS: min_(240), Counting: Total, Stages: st(model.HoldHot, model.HoldCold, model.Store)}
+	f := one(t, l, record(t, "cook 0-60, hold hot 60-200", "0:5 60:75 200:70"))
+	if f.Verdict != Met || !strings.Contains(f.Why, "for 0 s in hold hot, hold cold and store, and") {
+		t.Errorf("%v: %s", f.Verdict, f.Why)
+	}
+}
+
+// TestMarginOfAnotherPlace names the place that has the margin in temperature where it is not the one that decides.
+func TestMarginOfAnotherPlace(t *testing.T) {
+	h := records(t, "cool 0-300", trace(t, "slow", 0, "0:70 10:60 200:20 201:4 300:4"), trace(t, "warm", 5, "0:70 10:60 100:20 130:5 300:5"))
+	f := one(t, Limit{Kind: CoolWithin, FromC: c(60), ToC: c(21), TimeS: min_(240), Clock: crossing}, h)
+	if f.PlaceName == "" || len(f.Notes) != 1 || !strings.Contains(f.Notes[0], "another place") {
+		t.Errorf("%s: %v", f.Why, f.Notes)
+	}
+}

@@ -51,24 +51,26 @@ var words = map[string]string{
 	"cool late":         "{who} was still above {to} after {value} from {start}, and {time} is allowed.",
 	"cool open":         "{who} was still above {to} when the history ended, {value} from {start}, and {time} is allowed, so it cannot be told.",
 	"cool cut":          "{who} was still above {to} when the next heating began, {value} from {start}, and {time} is allowed, so it cannot be told.",
-	"cool stage":        "{who} was not down to {to} for good when the stage {stage} ended, {value} from {start}.",
+	"cool stage":        "{who} was at {left} when the stage {stage} ended, and was not down to {to} for good later either.",
+	"cool stage later":  "{who} was still at {left} when the stage {stage} ended; it was down to {to} only {value} from {start}, after that stage. If the limit lets the later stages count, name them too in Stage, as {wider}.",
 	"cool not fallen":   "{who} had not yet fallen to {start} when the history ended, so the clock never started and it cannot be told.",
 	"cool nowhere":      "No place was above the temperature at which the clock starts, so the limit does not apply.",
 	"heat closed":       "{who} took {value} to {to}, and {time} is allowed.",
 	"heat late":         "{who} had not reached {to} after {value}, and {time} is allowed.",
 	"heat open":         "{who} had not reached {to} when the history ended after {value}, and {time} is allowed, so it cannot be told.",
-	"heat stage":        "{who} had not reached {to} when the stage {stage} ended, after {value}.",
+	"heat stage":        "{who} was at {left} when the stage {stage} ended, and had not reached {to} later either.",
+	"heat stage later":  "{who} was only at {left} when the stage {stage} ended; it reached {to} after {value}, later than that stage. If the limit lets the later stages count, name them too in Stage, as {wider}.",
 	"heat nowhere":      "No place rose to the temperature at which the clock starts, so the limit does not apply.",
-	"band":              "{who} was between {from} and {to} for {value}, and {time} is allowed.",
-	"band again":        "{who} was between {from} and {to} more than once ({count} periods), and the limit allows one only.",
+	"band":              "{who} was between {from} and {to} for {value}{in}, and {time} is allowed.",
+	"band again":        "{who} was between {from} and {to} more than once ({count} periods){in}, and the limit allows one only.",
 	"stay above":        "{who} fell to {value}, and {level} must be kept.",
 	"stay below":        "{who} rose to {value}, and {level} must be kept.",
-	"out above":         "{who} was below {bare} for {value}, and {time} is allowed.",
-	"out below":         "{who} was above {bare} for {value}, and {time} is allowed.",
-	"out again":         "{who} was beyond {bare} more than once ({count} periods), and the limit allows one only.",
-	"outside":           "{who} was between {from} and {to} for {value}, and no time there is allowed.",
+	"out above":         "{who} was below {bare} for {value}{in}, and {time} is allowed.",
+	"out below":         "{who} was above {bare} for {value}{in}, and {time} is allowed.",
+	"out again":         "{who} was beyond {bare} more than once ({count} periods){in}, and the limit allows one only.",
+	"outside":           "{who} was between {from} and {to} for {value}{in}, and no time there is allowed.",
 	"outside touch":     "{who} touched {from} or {to}, and the limit does not allow that.",
-	"outside never":     "{who} was never between {from} and {to}.",
+	"outside never":     "{who} was never between {from} and {to}{in}.",
 	"end above":         "{who} was at {value} at {when}, and {level} is needed.",
 	"end below":         "{who} was at {value} at {when}, and {level} is needed.",
 	"end open":          "The history ended before {when}, so it cannot be told.",
@@ -100,10 +102,11 @@ var words = map[string]string{
 	"carry-over kept":       "Met only with the time after the {stage}: the slowest place ({place}) left the {stage} at {left}, and the {stage} alone is not enough",
 	"carry-over kept moist": "; a moist surface loses heat while standing, so the true food cools faster",
 
-	"note again":     "Rose above {temp} again at {when}; the clock does not start anew.",
-	"note heatings":  "The process has {count} heatings separated by chilling; each is judged on its own, and the best counts.",
-	"note separated": "The time is the sum of periods with chilling in between.",
-	"note early":     "{share} % was earned on a slow way up or barely above the floor.",
+	"note again":        "Rose above {temp} again at {when}; the clock does not start anew.",
+	"note margin place": "The margin in temperature is that of another place ({place}).",
+	"note heatings":     "The process has {count} heatings separated by chilling; each is judged on its own, and the best counts.",
+	"note separated":    "The time is the sum of periods with chilling in between.",
+	"note early":        "{share} % was earned on a slow way up or barely above the floor.",
 }
 
 // say fills a sentence.
@@ -221,6 +224,7 @@ func (l *Limit) own() holes {
 	put("logs", "Log reductions", l.Logs, 1, "")
 	h["logs"] = strings.TrimSpace(h["logs"])
 	h["bare"] = h["to"]
+	h["in"] = l.inStages()
 	if l.FromC != nil {
 		h["bare"] = h["from"]
 	}
@@ -232,6 +236,23 @@ func (l *Limit) own() holes {
 		h["time"] = "less than " + h["time"]
 	}
 	return h
+}
+
+// inStages names the stages of the limit: " in hold hot, hold cold and store"; "" for the whole chain.
+func (l *Limit) inStages() string {
+	s := ""
+	for i, st := range l.Stages {
+		switch {
+		case i == 0:
+			s = " in "
+		case i == len(l.Stages)-1:
+			s += " and "
+		default:
+			s += ", "
+		}
+		s += st.Name
+	}
+	return s
 }
 
 // operator words how the limit's temperature is compared, given its side.
