@@ -34,7 +34,7 @@ var triggers = []trigger{
 		})
 	})},
 	{"evaporation left out", stepsWhere(func(sp *model.Span) bool {
-		return anyExposure(sp.Step, func(e *model.Exposure) bool { return inAir(e) && uncovered(e) && !wet(e) })
+		return anyExposure(sp.Step, func(e *model.Exposure) bool { return inAir(e) && e.Surface != model.Film && uncovered(e) && !wet(e) }) // a typed coefficient stands for everything
 	})},
 	{"carry-over without evaporation", carryOver},
 	{"moist surface above boiling", boiling},

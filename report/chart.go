@@ -627,7 +627,7 @@ func surfacePlace(p *model.Product) (model.Place, bool) {
 // levels are the temperatures of the limits, each once, over the stages that they are about.
 func (h *Head) levels(p *Product, hist *model.History, axis *timeAxis) []level {
 	var out []level
-	add := func(l *rules.Limit, heading string, c *float64) {
+	add := func(l *rules.Limit, words string, c *float64) {
 		if c == nil {
 			return
 		}
@@ -645,7 +645,7 @@ func (h *Head) levels(p *Product, hist *model.History, axis *timeAxis) []level {
 				return
 			}
 		}
-		n := level{words: []string{h.briefly(l, heading, c), l.Name}, y: h.shown(*c), from: axis.at(from), to: axis.at(to)}
+		n := level{words: []string{words, l.Name}, y: h.shown(*c), from: axis.at(from), to: axis.at(to)}
 		for i := range out {
 			if out[i].y == n.y {
 				out[i].from, out[i].to = min(out[i].from, n.from), max(out[i].to, n.to)
@@ -662,13 +662,14 @@ func (h *Head) levels(p *Product, hist *model.History, axis *timeAxis) []level {
 		if f.Limit == nil || f.Verdict == rules.NotApplicable || len(out) > 5 {
 			continue
 		}
-		add(f.Limit, "From", f.Limit.FromC)
-		add(f.Limit, "To", f.Limit.ToC)
-		if f.Limit.FromC == nil && f.Limit.ToC == nil {
-			add(f.Limit, "Clock starts", f.Limit.Clock.AtC)
+		l := f.Limit
+		add(l, h.briefly(h.typed(l, "From", l.FromC)), l.FromC)
+		add(l, h.briefly(h.typed(l, "To", l.ToC)), l.ToC)
+		if l.FromC == nil && l.ToC == nil {
+			add(l, h.briefly(h.typed(l, "Clock starts", l.Clock.AtC)), l.Clock.AtC)
 		}
-		if t := f.Limit.Table; t != nil && len(t.Rows) > 0 {
-			add(f.Limit, "", &t.Rows[len(t.Rows)-1].C)
+		if row := decidingRow(f); row != nil {
+			add(l, h.briefly(h.rowTyped(row)), &row.C)
 		}
 	}
 	for i := range out {
@@ -679,9 +680,9 @@ func (h *Head) levels(p *Product, hist *model.History, axis *timeAxis) []level {
 	return out
 }
 
-// briefly writes a limit's temperature for a chart: as typed, and in the unit of the chart if that is another.
-func (h *Head) briefly(l *rules.Limit, heading string, c *float64) string {
-	s := h.typed(l, heading, c)
+// briefly shortens a limit's temperature, as typed with the other unit in brackets, for a chart: in the unit of the chart alone if
+// it was typed in that.
+func (h *Head) briefly(s string) string {
 	if first, _, found := strings.Cut(s, " ("); found && strings.HasSuffix(first, h.degree()) {
 		return first
 	}

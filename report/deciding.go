@@ -89,7 +89,7 @@ func (p *Product) tightness(f *rules.Finding) float64 {
 	if f.Verdict == rules.Met && f.Limit != nil && f.Limit.Kind == rules.Duration {
 		return math.Inf(1)
 	}
-	if f.Verdict == rules.Met && f.Unit == "min" && !needsMore(f) && finite(f.Value) && *f.Value == 0 {
+	if vacuous(f) {
 		return math.Inf(1)
 	}
 	if p.madeByUntil(f) == "" {
@@ -188,7 +188,7 @@ func (p *Product) Row() Row {
 	if d := p.decides(); d.finding != nil {
 		f := d.finding
 		g := p.telling(f)
-		r.MarginK, r.MarginS, r.tight = g.MarginK, g.MarginS, p.tightness(f)
+		r.MarginK, r.MarginS, r.tight = lackingOnly(f, g.MarginK), lackingOnly(f, g.MarginS), p.tightness(f)
 		if f.Limit != nil {
 			r.Deciding = f.Limit.Name
 		}
@@ -198,4 +198,17 @@ func (p *Product) Row() Row {
 	}
 	r.Why = strings.TrimSpace(strings.Join(append([]string{r.Why}, p.beside()...), " "))
 	return r
+}
+
+// lackingOnly leaves a margin out that would be room in a limit that is not met.
+func lackingOnly(f *rules.Finding, margin *float64) *float64 {
+	if f.Verdict == rules.NotMet && finite(margin) && *margin >= 0 {
+		return nil
+	}
+	return margin
+}
+
+// vacuous tells whether a limited time was met without any of it being used.
+func vacuous(f *rules.Finding) bool {
+	return f.Verdict == rules.Met && f.Unit == "min" && !needsMore(f) && finite(f.Value) && *f.Value == 0
 }

@@ -219,12 +219,8 @@ func (h *Head) asks(l *rules.Limit) string {
 // plainly is asks for whoever cooks: without words of theory.
 func (h *Head) plainly(f *rules.Finding) string {
 	l := f.Limit
-	if l.Table != nil {
-		for i := range l.Table.Rows {
-			if row := &l.Table.Rows[i]; !row.At.IsZero() && row.Typed != "" && slices.Contains(f.Cells, row.At) {
-				return say("plainly row", row.Typed, l.Table.Name)
-			}
-		}
+	if row := decidingRow(f); row != nil && row.Typed != "" {
+		return say("plainly row", row.Typed, l.Table.Name)
 	}
 	if l.Kind == nil || l.Kind.Name != "lethality" {
 		return h.asks(l)
@@ -233,6 +229,25 @@ func (h *Head) plainly(f *rules.Finding) string {
 		return say("plainly logs", h.typed(l, "Reference temperature", l.ReferenceC))
 	}
 	return say("plainly equivalent", minutes(l, "Time", l.TimeS), h.typed(l, "Reference temperature", l.ReferenceC))
+}
+
+// decidingRow is the row of a limit's table that decides its finding; nil if there is none.
+func decidingRow(f *rules.Finding) *rules.Row {
+	if f.Limit == nil || f.Limit.Table == nil {
+		return nil
+	}
+	for i := range f.Limit.Table.Rows {
+		if row := &f.Limit.Table.Rows[i]; !row.At.IsZero() && slices.Contains(f.Cells, row.At) {
+			return row
+		}
+	}
+	return nil
+}
+
+// rowTyped writes the temperature of a table's row as typed, with the other unit in brackets.
+func (h *Head) rowTyped(row *rules.Row) string {
+	temperature, _, _ := strings.Cut(row.Typed, ",")
+	return h.typed(&rules.Limit{Typed: map[string]string{"": temperature}}, "", &row.C)
 }
 
 // bare tells whether a limit lacks a part of its citation.
@@ -259,7 +274,7 @@ func (h *Head) room(f *rules.Finding) string {
 		write func(v float64, r rounding) string
 	}{{f.MarginK, h.difference}, {f.MarginS, duration}} {
 		switch {
-		case !finite(m.v):
+		case !finite(m.v), *m.v >= 0 && f.Verdict == rules.NotMet: // what is missed has no room
 		case *m.v >= 0:
 			have = append(have, m.write(*m.v, down))
 		default:

@@ -422,11 +422,10 @@ func (d *doc) running(i, n int) {
 	d.put(d.left+frameWide-widthMM(number, small, false), footerY+3.6, number, small, false)
 	d.put(d.left, footerY+3.6, shorten(d.clean(say("footer", h.Version, h.digest(), h.day())), 150, small, false), small, false)
 	d.y = footerY
-	note := d.notes[i-1]
+	d.put(d.left, footerY+7.4, shorten(d.notes[i-1], frameWide, small, false), small, false)
 	if i == 1 && len(d.unseen) > 0 {
-		note = say("glyphs missing", d.unseen.list())
+		d.put(d.left, footerY+11.2, shorten(say("glyphs missing", d.unseen.list()), frameWide, small, true), small, true)
 	}
-	d.put(d.left, footerY+7.4, shorten(note, frameWide, small, i == 1 && len(d.unseen) > 0), small, i == 1 && len(d.unseen) > 0)
 }
 
 // item of the sheet Plan by its name; "" if it is not there.

@@ -268,7 +268,7 @@ func (x *sheet) checks() []string {
 	var due []*rules.Finding
 	seen := map[string]bool{}
 	for _, f := range x.order {
-		if f.Limit == nil || f.Level != "must" || f.Verdict == rules.NotApplicable || f.Place == nil || seen[f.Limit.Name] {
+		if f.Limit == nil || f.Level != "must" || f.Verdict == rules.NotApplicable || f.Place == nil || seen[f.Limit.Name] || vacuous(f) {
 			continue
 		}
 		seen[f.Limit.Name] = true
@@ -287,9 +287,9 @@ func (x *sheet) checks() []string {
 			when = say("check throughout", stages(f.Limit))
 		}
 		if finite(f.AtS) {
-			when = say("check at", duration(*f.AtS, nearest), x.stepAt(f)+x.checkRun(f))
+			when = say("check at", duration(60*math.Round(*f.AtS/60), nearest), x.stepAt(f)+x.checkRun(f))
 		}
-		line := capped(x.clean(say("check", when, place, x.head.plainly(f))), frameWide-widthMM("1.  ", kitchen, false), kitchen, [...]int{5, 5, 2}[x.short])
+		line := capped(x.clean(say("check", when, place+x.expected(f), x.head.plainly(f))), frameWide-widthMM("1.  ", kitchen, false), kitchen, [...]int{5, 5, 2}[x.short])
 		if !slices.Contains(out, line) {
 			out = append(out, line)
 		}
@@ -298,6 +298,26 @@ func (x *sheet) checks() []string {
 		out = append(out, say("check nothing"))
 	}
 	return out
+}
+
+// expected is what a probe should read at the place and instant that decide a finding, in its own run; "" where there is none.
+func (x *sheet) expected(f *rules.Finding) string {
+	hist := x.p.History
+	if f.LowConductivity && x.p.Low != nil {
+		hist = x.p.Low
+	}
+	if !finite(f.AtS) || f.Place == nil || hist == nil {
+		return ""
+	}
+	c := hist.At(*f.Place, *f.AtS)
+	if !finite(&c) {
+		return ""
+	}
+	key := "check expects"
+	if hist.Recorded {
+		key = "check recorded"
+	}
+	return say(key, x.head.temperature(c, x.cautious(*f.AtS)))
 }
 
 // checkRun names the run of a check where that is not the one of the picture.

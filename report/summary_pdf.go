@@ -117,8 +117,13 @@ func (d *doc) plan() {
 func (d *doc) noted() {
 	h := d.head
 	d.heading(say("summary problems"), 1, 20)
+	if len(d.unseen) > 0 {
+		d.text(say("summary unseen", d.unseen.list()))
+	}
 	if len(h.Problems) == 0 {
-		d.text(say("summary no problem"))
+		if len(d.unseen) == 0 {
+			d.text(say("summary no problem"))
+		}
 		return
 	}
 	ps := h.Problems
