@@ -52,6 +52,8 @@ type question struct {
 	unit    string
 	need    float64 // required, in unit; NaN for none
 	warm    bool    // colder food would be less favourable, so a bound from above proves nothing once it begins
+	both    bool    // warmer food would be less favourable as well
+	steady  bool    // the error moves a whole course, so that the margin alone does not weigh against it
 	adds    bool    // what was reached before a bound begins counts all the same
 }
 
@@ -198,8 +200,11 @@ func (v *view) candidates(s scope, q question) []candidate {
 		return []candidate{{place: *s.one, path: p, nominal: q.measure(p, tilt{})}}
 	}
 	picks := v.pick(s.spots, q, tilt{})
-	if v.errK > 0.05 || v.patchy && v.l.clocked() {
+	if v.errK > 0 || v.patchy && v.l.clocked() {
 		picks = append(picks, v.pick(s.spots, q, v.unfavourable())...)
+	}
+	if v.errK > 0 && v.single() { // a warmer place may come back for a second period
+		picks = append(picks, v.pick(s.spots, q, tilt{errK: -v.errK})...)
 	}
 	var cs []candidate
 	add := func(p model.Place, surface bool) {
@@ -458,13 +463,14 @@ func worstAt(q question, cs []candidate, t tilt) outcome {
 func (v *view) weigh(f *Finding, o outcome, q question, cs []candidate) (tail string) {
 	if v.errK > 0 || v.l.clocked() {
 		word := ""
-		if o.verdict == Met && worstAt(q, cs, v.unfavourable()).verdict != Met {
+		if o.verdict == Met && v.unsure(f, q, cs) {
 			word = "within error met"
 			if v.errK == 0 {
 				f.Verdict = CannotTell
 				return say("clock elsewhere", holes{"start": v.l.startWords()})
 			}
-		} else if o.verdict == NotMet && v.errK > 0 && worstAt(q, cs, tilt{errK: -v.errK}).verdict == Met {
+		} else if o.verdict == NotMet && v.errK > 0 && (worstAt(q, cs, tilt{errK: -v.errK}).verdict == Met ||
+			v.single() && worstAt(q, cs, tilt{errK: v.errK}).verdict == Met) {
 			word = "within error missed"
 		}
 		if word != "" {
@@ -485,11 +491,40 @@ func (v *view) weigh(f *Finding, o outcome, q question, cs []candidate) (tail st
 		f.Verdict = CannotTell
 		return say("bound", holes{"bound": v.h.Bound, "at": clockTime(v.h.BoundFromS)})
 	}
+	if f.Verdict == NotMet && (!q.warm || q.both) && v.h.Bound != "" && !same(v.l.Where.Name, "medium") && !v.lost(q, cs) {
+		f.Verdict = CannotTell
+		return say("bound", holes{"bound": v.h.Bound, "at": clockTime(v.h.BoundFromS)})
+	}
 	if o.sparse != "" && f.Verdict == Met {
 		f.Verdict = CannotTell
 		return o.sparse
 	}
 	return ""
+}
+
+// unsure tells whether a limit that is met as calculated may not be met within the error: at the unfavourable end, or where
+// the room left is smaller than the error; for a single period at either end, since there a second one may begin or a gap open.
+func (v *view) unsure(f *Finding, q question, cs []candidate) bool {
+	if worstAt(q, cs, v.unfavourable()).verdict != Met {
+		return true
+	}
+	if v.errK == 0 {
+		return false
+	}
+	return !q.steady && f.MarginK != nil && *f.MarginK < v.errK-sameK || v.single() && worstAt(q, cs, tilt{errK: -v.errK}).verdict != Met
+}
+
+// single tells whether one period only is allowed, so that a change of all temperatures one way may mend or break the limit.
+func (v *view) single() bool { return v.l.Counting == Once }
+
+// lost tells whether a limit that colder food would meet was missed before the temperatures became bounds.
+func (v *view) lost(q question, cs []candidate) bool {
+	for _, c := range cs {
+		if q.measure(v.dropFrom(c.path), tilt{errK: -v.errK}).verdict == NotMet {
+			return true
+		}
+	}
+	return false
 }
 
 // turns says what to do where a step that ends by Until ends at the very limit; "" elsewhere.
