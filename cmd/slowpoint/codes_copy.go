@@ -31,10 +31,10 @@ func codesCopyCommand() *cobra.Command {
 			if _, err := os.Stat(plan); err != nil {
 				return &failure{exitInput, fmt.Errorf("%s cannot be read: %w", plan, err)}
 			}
-			var notCarried []string
+			var there, notCarried []string
 			var refused error
 			err = writeWhole(target, func(w io.Writer) error {
-				notCarried, refused = workbook.CopyRows(sheetRows(rows), plan, w)
+				there, notCarried, refused = workbook.CopyRows(sheetRows(rows), plan, w)
 				return refused
 			})
 			if refused != nil {
@@ -44,7 +44,10 @@ func codesCopyCommand() *cobra.Command {
 				return &failure{exitFault, err}
 			}
 			out := cmd.OutOrStdout()
-			fmt.Fprintf(out, "%s: %s added\n", target, count(len(rows), "limit"))
+			fmt.Fprintf(out, "%s: %s added\n", target, count(len(rows)-len(there), "limit"))
+			for _, n := range there {
+				fmt.Fprintf(out, "already there: %s\n", n)
+			}
 			for _, n := range notCarried {
 				fmt.Fprintf(out, "not carried over: %s\n", n)
 			}

@@ -54,6 +54,7 @@ func TestParse(t *testing.T) {
 		{"two numbers", &Length, "20 30", mm, Unsure, 0, "single number"},
 		{"range", &Length, "20-30", mm, Unsure, 0, "single number"},
 		{"division by zero", &Length, "1/0 in", mm, Unsure, 0, "not a number"},
+		{"feet a second", &Speed, "10 ft/s", Speed.Unit("m/s"), Unsure, 3.048, ""}, // 1 ft = 0.3048 m exactly (international yard, 1959)
 		{"unit of a bare number", &Number, "3 kg", &Number.Units[0], Unsure, 0, "plain number"},
 		{"per cent in the cell", &Percent, "65 %", &Percent.Units[0], Unsure, 65, ""},
 	} {
@@ -137,4 +138,14 @@ func FuzzCell(f *testing.F) {
 		}
 		Evidence(s)
 	})
+}
+
+// TestAmbiguous: one sign before three digits is in doubt, and nothing else is.
+func TestAmbiguous(t *testing.T) {
+	for text, want := range map[string]bool{"1,500": true, "1.050 kg/m³": true, "-12,345": true, "0,500": false, "1,50": false, "1500": false,
+		"1,234.5": false, "1 1/4": false, "words": false, "": false} {
+		if got := Ambiguous(text); got != want {
+			t.Errorf("%q: %v", text, got)
+		}
+	}
 }

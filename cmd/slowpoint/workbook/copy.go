@@ -25,65 +25,66 @@ type Rows map[string][]map[string]string
 
 // CopyRows writes a new workbook: the plan as it is, with rows for the sheets Limits, Tables and Groups added below the last row of
 // each. A sheet or a heading that is missing is added; no filled cell is changed. A table or group that the plan has already is used if it
-// says the same, else the new one takes a numbered name; so does a limit of a name that is taken.
+// says the same, else the new one takes a numbered name. A limit that the plan has already is not added again: there names those, as the
+// plan does; one of the same name that says something else takes a numbered name too.
 // notCarried says, a line each, what the new workbook lacks of the old one. The error says why there is no new workbook.
-func CopyRows(rows Rows, planPath string, w io.Writer) (notCarried []string, err error) {
+func CopyRows(rows Rows, planPath string, w io.Writer) (there, notCarried []string, err error) {
 	info, err := os.Stat(planPath)
 	if err != nil {
-		return nil, fmt.Errorf("%s: it cannot be opened (%s)", planPath, reason(err))
+		return nil, nil, fmt.Errorf("%s: it cannot be opened (%s)", planPath, reason(err))
 	}
 	if info.IsDir() {
-		return nil, fmt.Errorf("%s: rows can be added to a workbook, not to a folder of CSV files: write a workbook with slowpoint blank, copy the rows into it, and save its sheets Limits, Tables and Groups as CSV", planPath)
+		return nil, nil, fmt.Errorf("%s: rows can be added to a workbook, not to a folder of CSV files: write a workbook with slowpoint blank, copy the rows into it, and save its sheets Limits, Tables and Groups as CSV", planPath)
 	}
 	if info.Size() > mostBytes {
-		return nil, fmt.Errorf("%s: the file is larger than %d MB, too large for a plan", planPath, mostBytes>>20)
+		return nil, nil, fmt.Errorf("%s: the file is larger than %d MB, too large for a plan", planPath, mostBytes>>20)
 	}
 	old, err := os.ReadFile(planPath)
 	if err != nil {
-		return nil, fmt.Errorf("%s: it cannot be read (%s)", planPath, reason(err))
+		return nil, nil, fmt.Errorf("%s: it cannot be read (%s)", planPath, reason(err))
 	}
-	out, notCarried, err := copyRows(rows, old)
+	out, there, notCarried, err := copyRows(rows, old)
 	if err != nil {
-		return nil, fmt.Errorf("%s: %w", planPath, err)
+		return nil, nil, fmt.Errorf("%s: %w", planPath, err)
 	}
 	_, err = w.Write(out)
-	return notCarried, err
+	return there, notCarried, err
 }
 
-// copyRows gives the bytes of the new workbook, and what it lacks of the old one.
-func copyRows(rows Rows, old []byte) (out []byte, notCarried []string, err error) {
+// copyRows gives the bytes of the new workbook, the limits that the old one has already, and what the new one lacks of it.
+func copyRows(rows Rows, old []byte) (out []byte, there, notCarried []string, err error) {
 	grids, err := readWorkbook(old)
 	if err != nil {
-		return nil, nil, err
+		return nil, nil, nil, err
 	}
 	f, err := excelize.OpenReader(bytes.NewReader(old), excelize.Options{UnzipSizeLimit: mostBytes, UnzipXMLSizeLimit: mostBytes})
 	if err != nil {
-		return nil, nil, fmt.Errorf("the workbook cannot be opened for a copy (%w)", err)
+		return nil, nil, nil, fmt.Errorf("the workbook cannot be opened for a copy (%w)", err)
 	}
 	defer f.Close()
 	c := &copier{f: f, sheets: map[string]*copySheet{}}
 	if rows, err = rows.written(grids, c); err != nil {
-		return nil, nil, err
+		return nil, nil, nil, err
 	}
 	for _, name := range []string{"Limits", "Tables", "Groups"} {
 		if c.sheets[name], err = c.find(SheetNamed(name), grids); err != nil {
-			return nil, nil, err
+			return nil, nil, nil, err
 		}
 	}
 	for _, name := range []string{"Tables", "Groups", "Limits"} {
 		if err := c.sheets[name].add(c, c.fit(name, rows)); err != nil {
-			return nil, nil, fmt.Errorf("sheet %s: %w", name, err)
+			return nil, nil, nil, fmt.Errorf("sheet %s: %w", name, err)
 		}
 	}
 	var b bytes.Buffer
 	if err := f.Write(&b); err != nil {
-		return nil, nil, fmt.Errorf("the copy cannot be written (%w)", err)
+		return nil, nil, nil, fmt.Errorf("the copy cannot be written (%w)", err)
 	}
 	if err := unchanged(grids, b.Bytes()); err != nil {
-		return nil, nil, err
+		return nil, nil, nil, err
 	}
 	notCarried, err = lost(old, b.Bytes())
-	return b.Bytes(), append(notCarried, c.short...), err
+	return b.Bytes(), c.there, append(notCarried, c.short...), err
 }
 
 // written gives a copy of the rows, each once in Tables and Groups, with the decimal sign of the plan.
@@ -128,6 +129,7 @@ type copier struct {
 	sheets map[string]*copySheet
 
 	decimal unit.Decimal // of the plan
+	there   []string     // limits that the plan has already, by its names
 	short   []string     // tables of the spreadsheet program that end above the new rows
 }
 
@@ -232,9 +234,15 @@ func (c *copier) fit(sheet string, rows Rows) []map[string]string {
 			}
 		}
 	case "Limits":
-		taken, _ := byName(c.sheets["Limits"].rows, "Limit")
+		taken, have := byName(c.sheets["Limits"].rows, "Limit")
 		for _, l := range rows["Limits"] {
-			now := c.settle(l["Limit"], taken, func(string) bool { return false })
+			now := c.settle(l["Limit"], taken, func(as string) bool {
+				return slices.ContainsFunc(have[key(as)], func(h map[string]string) bool { return c.sheets["Limits"].sameLimit(c.decimal, h, l) })
+			})
+			if old := have[key(now)]; old != nil {
+				c.there = append(c.there, old[0]["Limit"])
+				continue
+			}
 			taken = append(taken, now)
 			out = append(out, renamed([]map[string]string{l}, "Limit", now)...)
 		}
@@ -291,6 +299,34 @@ func renamed(rows []map[string]string, column, to string) []map[string]string {
 		out = append(out, n)
 	}
 	return out
+}
+
+// theUsers are the columns of a limit that its user fills; they do not make another limit of it.
+var theUsers = []string{"Limit", "CCP", "Hazard", "Confirmed by", "Confirmed on", "Note"}
+
+// sameLimit tells whether two limits say the same, whatever their units.
+func (cs *copySheet) sameLimit(d unit.Decimal, have, want map[string]string) bool {
+	for _, col := range cs.Columns {
+		a, b := have[col.Heading], want[col.Heading]
+		if slices.Contains(theUsers, col.Heading) || key(a) == key(b) && col.Quantity == nil {
+			continue
+		}
+		if col.Quantity == nil || a == "" || b == "" {
+			if a != b {
+				return false
+			}
+			continue
+		}
+		x, m := col.Quantity.Parse(a, col.Quantity.Unit(cs.own[col.Heading]), d)
+		y, n := col.Quantity.Parse(b, nil, d)
+		if col.Quantity.Plain() {
+			y, n = col.Quantity.Parse(b, &col.Quantity.Units[0], d)
+		}
+		if m != nil || n != nil || short(x.Computed) != short(y.Computed) {
+			return false // what cannot be read is not the same
+		}
+	}
+	return true
 }
 
 // sameTable tells whether two tables have the same rows, whatever their units and order.

@@ -3,6 +3,7 @@ package workbook
 import (
 	"archive/zip"
 	"bytes"
+	"errors"
 	"io"
 	"math"
 	"os"
@@ -98,7 +99,7 @@ func (p plan) save(t *testing.T, change func(*excelize.File)) string {
 func copied(t *testing.T, rows Rows, path string) (*Plan, []string, string) {
 	t.Helper()
 	var b bytes.Buffer
-	lacks, err := CopyRows(rows, path, &b)
+	_, lacks, err := CopyRows(rows, path, &b)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -216,7 +217,7 @@ func TestCopyNames(t *testing.T) {
 		groupRowsWant int
 	}{
 		{"nothing there", nil, "", 1, 2, group, group, name, 1},
-		{"copied twice", nil, "", 2, 2, group, group, name + " (2)", 1},
+		{"copied twice", nil, "", 2, 2, group, group, name, 1},
 		{"the same table in other units", same, "any of", 1, 2, group, group, name, 1},
 		{"another table of that name", other, "any of", 1, 3, group + " (2)", group, name, 1},
 		{"another group of that name", nil, "all of", 1, 2, group, group + " (2)", name, 2},
@@ -242,6 +243,9 @@ func TestCopyNames(t *testing.T) {
 			}
 			for _, e := range inLimits(p) {
 				t.Errorf("%s: %v", e.Level, e)
+			}
+			if len(p.Limits) != 2 {
+				t.Errorf("%d limits, want ours and the new one", len(p.Limits))
 			}
 			l := limitNamed(t, p, c.limit)
 			if l.Typed["Table"] != c.table || l.Group != c.group || len(l.Table.Rows) != 2 {
@@ -327,7 +331,7 @@ func TestCopyRefuses(t *testing.T) {
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			var b bytes.Buffer
-			_, err := CopyRows(rowsOf(t, "UK-P70"), c.path(t), &b)
+			_, _, err := CopyRows(rowsOf(t, "UK-P70"), c.path(t), &b)
 			if err == nil || !strings.Contains(err.Error(), c.want) || b.Len() > 0 {
 				t.Errorf("error %v with %d bytes written, want one that says %q", err, b.Len(), c.want)
 			}
@@ -404,7 +408,7 @@ func TestCopySameBytes(t *testing.T) {
 	var first bytes.Buffer
 	for i := range 4 {
 		var b bytes.Buffer
-		if _, err := CopyRows(rowsOf(t, "UK-FSA-VPMAP", "UK-ACMSF-burger-70"), path, &b); err != nil {
+		if _, _, err := CopyRows(rowsOf(t, "UK-FSA-VPMAP", "UK-ACMSF-burger-70"), path, &b); err != nil {
 			t.Fatal(err)
 		}
 		if i == 0 {
@@ -480,4 +484,60 @@ func edited(t *testing.T, data []byte, part, from, to string) []byte {
 		t.Fatal(err)
 	}
 	return b.Bytes()
+}
+
+// TestCopyTwice: a limit that the plan has already is told and not added, in whatever units it stands there; another one of its name is.
+func TestCopyTwice(t *testing.T) {
+	const id = "UK-P70"
+	name := rowsOf(t, id)["Limits"][0]["Limit"]
+	for _, c := range []struct {
+		name    string
+		change  func(f *excelize.File, sheet string, at map[string]string) error
+		there   int
+		renamed bool
+	}{
+		{"unchanged", nil, 1, false},
+		{"confirmed and noted", func(f *excelize.File, s string, at map[string]string) error {
+			return errors.Join(f.SetCellStr(s, at["Confirmed by"], "A. Cook"), f.SetCellStr(s, at["Note"], "seen"))
+		}, 1, false},
+		{"in the other degrees", func(f *excelize.File, s string, at map[string]string) error {
+			return f.SetCellStr(s, at["Reference temperature"], "158 °F") // 70 °C
+		}, 1, false},
+		{"another temperature", func(f *excelize.File, s string, at map[string]string) error {
+			return f.SetCellStr(s, at["Reference temperature"], "71 °C")
+		}, 0, true},
+		{"for one product", func(f *excelize.File, s string, at map[string]string) error {
+			return f.SetCellStr(s, at["Applies to"], "P")
+		}, 0, true},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			p, _, path := copied(t, rowsOf(t, id), everyStage().save(t, nil))
+			row := strconv.Itoa(limitNamed(t, p, name).At.Row)
+			if c.change != nil {
+				f, err := excelize.OpenFile(path)
+				if err != nil {
+					t.Fatal(err)
+				}
+				at := map[string]string{}
+				for h, col := range p.Columns["Limits"] {
+					at[h] = cell.ColumnName(col) + row
+				}
+				if err := errors.Join(c.change(f, "Limits", at), f.Save(), f.Close()); err != nil {
+					t.Fatal(err)
+				}
+			}
+			var b bytes.Buffer
+			there, _, err := CopyRows(rowsOf(t, id), path, &b)
+			if err != nil || len(there) != c.there || c.there == 1 && there[0] != name {
+				t.Errorf("there already: %q, %v", there, err)
+			}
+			again := filepath.Join(t.TempDir(), "again.xlsx")
+			if err := os.WriteFile(again, b.Bytes(), 0o644); err != nil {
+				t.Fatal(err)
+			}
+			if q := readPlan(t, again); (len(q.Limits) == len(p.Limits)+1) != c.renamed {
+				t.Errorf("%d limits, there were %d", len(q.Limits), len(p.Limits))
+			}
+		})
+	}
 }
