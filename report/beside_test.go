@@ -1,0 +1,104 @@
+package report
+
+import (
+	"bytes"
+	"strings"
+	"testing"
+
+	"slowpoint/model"
+	"slowpoint/rules"
+)
+
+// TestBeside keeps what must be read together with a verdict on the front pages, in the text and in the overview.
+func TestBeside(t *testing.T) {
+	const rise = "Met only through the rise after the cook: the slowest place (centre) left the cook at 37.8 °C and rose to 67.8 °C."
+	for _, x := range []struct {
+		name    string
+		verdict rules.Verdict
+		change  func(p *Product)
+		want    []string
+		not     []string
+	}{
+		{"only by carry-over", rules.Met, func(p *Product) { p.Judgement.Findings[0].CarryOver = rise }, []string{`"Core reached": ` + rise}, nil},
+		{"a limit that does not apply", rules.Met, func(p *Product) {}, []string{"3 met; 1 did not apply: Hot holding."}, []string{"carry-over"}},
+		{"a clock that never started comes first", rules.Met, func(p *Product) { p.Judgement.Findings[1].Verdict = rules.NotApplicable },
+			[]string{"2 met; 2 did not apply: Chill, first part, Hot holding."}, nil},
+		{"an Until that was not reached", rules.NotMet, func(p *Product) { no := false; p.History.Spans[0].Reached, p.Low.Spans[0].Reached = &no, &no },
+			[]string{"The step Roast did not reach its Until within its longest duration (1 h 30 min)."}, nil},
+		{"an Until that was reached at once", rules.Met, func(p *Product) {
+			yes := true
+			for _, h := range []*model.History{p.History, p.Low} {
+				h.Spans[1].Reached, h.Spans[1].EndS = &yes, h.Spans[1].StartS
+			}
+		}, []string{"The step Rest on the bench ended at once: its Until was already reached when it began."}, nil},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			h, p := roastHead(), roast(t, model.Brick, x.verdict)
+			x.change(p)
+			row := p.Row()
+			text := writeText(t, h, p)
+			for _, w := range x.want {
+				if !strings.Contains(row.Why, w) {
+					t.Errorf("the overview lacks %q: %s", w, row.Why)
+				}
+				if n := strings.Count(text, w); n < 2 {
+					t.Errorf("the text has %q %d times", w, n)
+				}
+			}
+			for _, w := range x.not {
+				if strings.Contains(row.Why, w) {
+					t.Errorf("the overview has %q: %s", w, row.Why)
+				}
+			}
+			pdf := pdfText(t, productPDF(t, h, p))
+			kitchen, audit, _ := strings.Cut(pdf, "Report for the audit")
+			words := strings.Fields(x.want[0])
+			last := words[len(words)-1] // lines of the box break within the sentence beside the word of the verdict
+			if !strings.Contains(kitchen, last) || !strings.Contains(audit, x.want[0]) {
+				t.Errorf("the front pages lack %q:\n%.900s", x.want[0], pdf)
+			}
+		})
+	}
+}
+
+func writeText(t *testing.T, h *Head, p *Product) string {
+	t.Helper()
+	var b bytes.Buffer
+	w := NewText(&b, h)
+	if err := w.Add(p); err != nil {
+		t.Fatal(err)
+	}
+	if err := w.Close(); err != nil {
+		t.Fatal(err)
+	}
+	return b.String()
+}
+
+// TestNoRoomInAMissedLimit prints what is lacking and nothing that looks like room.
+func TestNoRoomInAMissedLimit(t *testing.T) {
+	f := &rules.Finding{Verdict: rules.NotMet, MarginK: ptr(-2.), MarginS: ptr(6000.)}
+	if s := roastHead().room(f); strings.Contains(s, "room") || !strings.Contains(s, "lacking 2.0 °C") {
+		t.Error(s)
+	}
+	if f.Verdict = rules.Met; !strings.Contains(roastHead().room(f), "room 1 h 40 min") {
+		t.Error(roastHead().room(f))
+	}
+}
+
+// TestDecidingRow finds the row of a table that decides and writes it in its own unit.
+func TestDecidingRow(t *testing.T) {
+	rows := []rules.Row{{C: 60, S: 720, Typed: "60 °C, 12 min"}, {C: 145/1.8 - 32/1.8, S: 240, Typed: "145 °F, 4 min"}}
+	rows[0].At.Sheet, rows[0].At.Row, rows[1].At.Sheet, rows[1].At.Row = "Tables", 2, "Tables", 3
+	f := &rules.Finding{Limit: &rules.Limit{Table: &rules.Table{Name: "T", Rows: rows}}}
+	if decidingRow(f) != nil {
+		t.Error("a row decides without being named")
+	}
+	f.Cells = append(f.Cells, rows[1].At)
+	row := decidingRow(f)
+	if row == nil || row.S != 240 {
+		t.Fatalf("%+v", row)
+	}
+	if s := roastHead().rowTyped(row); s != "145 °F (62.78 °C)" {
+		t.Error(s)
+	}
+}
