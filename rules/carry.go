@@ -83,18 +83,18 @@ func (v *view) rose(hot *view, g *Finding) string {
 		key = "carry-over kept"
 	}
 	says := say(key, h)
-	if !v.h.Recorded && !v.wetAfter(from) {
+	if !v.h.Recorded && !v.enclosed(from) {
 		says += say(key+" moist", nil)
 	}
 	return says + "."
 }
 
-// wetAfter tells whether the first step of a stretch has an evaporating surface.
-func (v *view) wetAfter(iv interval) bool {
+// enclosed tells whether the first step of a stretch needs no word on evaporation: its wet surface is calculated, or it is covered.
+func (v *view) enclosed(iv interval) bool {
 	for _, sp := range v.h.Spans {
 		if sp.Step != nil && sp.StartS >= iv.a-sameS {
-			w := sp.Step.Exposure.Wet
-			return w != nil && *w
+			e := &sp.Step.Exposure
+			return e.Wet != nil && *e.Wet || e.Cover != nil && e.Cover != model.Open
 		}
 	}
 	return false
