@@ -11,13 +11,18 @@ import (
 // whose Until did not do what it was typed for, and limits that did not apply, for a slip in a unit shows itself only there.
 func (p *Product) beside() []string {
 	var s []string
+	decides := p.decides().finding
 	for _, f := range p.worstFirst() {
 		if f.CarryOver != "" && f.Verdict == rules.Met && f.Level == "must" && f.Limit != nil {
-			s = append(s, say("beside carry-over", f.Limit.Name, f.CarryOver))
+			says := say("beside carry-over", f.Limit.Name, f.CarryOver)
+			if f == decides { // the sentence before it names the limit
+				says = f.CarryOver
+			}
+			s = append(s, says)
 		}
 	}
 	s = append(s, p.untils()...)
-	if p.decides().finding == nil { // why nothing was judged says the same
+	if decides == nil { // why nothing was judged says the same
 		return s
 	}
 	if idle := p.notApplied(); idle != "" {

@@ -145,14 +145,14 @@ func lasting(s float64, up int) string {
 	return round(s/60, 1, up) + " min"
 }
 
-// inF tells whether the limit's own temperatures were typed in °F; its sentences then speak °F.
+// inF tells whether the limit's own temperatures, or those of its table, were typed in °F; its sentences then speak °F.
 func (l *Limit) inF() bool {
 	for _, column := range []string{"From", "To", "Reference temperature", "Allowance", "Clock starts"} {
 		if t := strings.TrimSpace(l.Typed[column]); strings.Contains(t, "°") {
 			return strings.HasSuffix(t, "F")
 		}
 	}
-	return false
+	return l.Table != nil && len(l.Table.Rows) > 0 && strings.Contains(l.Table.Rows[0].Typed, "°F")
 }
 
 // degrees writes a temperature (°C) in the unit in which the limit was typed, rounded as asked.
