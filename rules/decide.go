@@ -200,7 +200,7 @@ func (v *view) candidates(s scope, q question) []candidate {
 		return []candidate{{place: *s.one, path: p, nominal: q.measure(p, tilt{})}}
 	}
 	picks := v.pick(s.spots, q, tilt{})
-	if v.errK > 0 || v.patchy && v.l.clocked() {
+	if v.errK > 0.05 || v.errK > 0 && v.several() || v.patchy && v.l.clocked() {
 		picks = append(picks, v.pick(s.spots, q, v.unfavourable())...)
 	}
 	if v.errK > 0 && v.single() { // a warmer place may come back for a second period
@@ -516,6 +516,13 @@ func (v *view) unsure(f *Finding, q question, cs []candidate) bool {
 
 // single tells whether one period only is allowed, so that a change of all temperatures one way may mend or break the limit.
 func (v *view) single() bool { return v.l.Counting == Once }
+
+// several tells whether the error moves more than the limit's own temperature, so that the margin does not find every place
+// where it decides.
+func (v *view) several() bool {
+	l := v.l
+	return v.single() || l.clocked() || l.FromC != nil && (l.ToC != nil || l.ReferenceC != nil)
+}
 
 // lost tells whether a limit that colder food would meet was missed before the temperatures became bounds.
 func (v *view) lost(q question, cs []candidate) bool {
