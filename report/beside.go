@@ -49,7 +49,7 @@ func (p *Product) untils() []string {
 	return s
 }
 
-// notApplied counts the verdicts and names the limits that did not apply, those with a clock that never started first; "" if all did.
+// notApplied counts the verdicts that weigh and names the limits that did not apply, those with a clock that never started first; "" if all did.
 func (p *Product) notApplied() string {
 	const most = 4
 	var n [4]int
@@ -59,7 +59,9 @@ func (p *Product) notApplied() string {
 		if f.Level == "alternative" || f.Limit == nil {
 			continue
 		}
-		n[f.Verdict]++
+		if f.Level == "must" {
+			n[f.Verdict]++
+		}
 		if f.Verdict != rules.NotApplicable {
 			continue
 		}
