@@ -169,7 +169,7 @@ func (p path) stay(ivs []interval, r region) spent {
 	var sp spent
 	lo, hi := r.lo-r.slack, r.hi+r.slack
 	for _, iv := range ivs {
-		q := p.in(iv)
+		q := p.in(iv).turned(r)
 		if len(q.t) == 0 {
 			continue
 		}
@@ -196,6 +196,39 @@ func (p path) stay(ivs []interval, r region) spent {
 		}
 	}
 	return sp
+}
+
+// nearK is how close to an end of a region a turn of an exact course is looked at between its knots, K: several times straightK.
+const nearK = 0.2
+
+// turned adds the turns of an exact course that cross an end of a region between two knots, so that no short dip is unseen.
+func (p path) turned(r region) path {
+	if p.at == nil || len(p.t) < 2 {
+		return p
+	}
+	q, n := p, len(p.t)-1
+	for i, c := range p.c {
+		if !(math.Abs(c-r.lo) < nearK || math.Abs(c-r.hi) < nearK) {
+			continue
+		}
+		before, after := p.c[max(i-1, 0)], p.c[min(i+1, n)]
+		for _, sign := range []float64{-1, 1} {
+			if sign*before > sign*c || sign*after > sign*c {
+				continue
+			}
+			at, x := p.polish(i, sign)
+			if r.holds(x) == r.holds(c) {
+				continue
+			}
+			k := sort.SearchFloat64s(q.t, at)
+			if k < len(q.t) && q.t[k] == at {
+				continue
+			}
+			q.t = append(append(append([]float64(nil), q.t[:k]...), at), q.t[k:]...)
+			q.c = append(append(append([]float64(nil), q.c[:k]...), x), q.c[k:]...)
+		}
+	}
+	return q
 }
 
 // edge is the end of the region that a temperature outside it lies beyond.

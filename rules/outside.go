@@ -13,7 +13,7 @@ func judgeOutside(v *view) Finding {
 	q.room = func(p path) float64 {
 		deep := math.Inf(-1) // the deepest point in the band, K; negative: how far off the nearest is
 		for _, iv := range v.stages {
-			s := p.in(iv)
+			s := p.in(iv).turned(between(*l.FromC, *l.ToC))
 			for i, x := range s.c {
 				deep = math.Max(deep, math.Min(x-*l.FromC, *l.ToC-x))
 				if mid := (*l.FromC + *l.ToC) / 2; i > 0 && (x-mid)*(s.c[i-1]-mid) <= 0 {

@@ -80,3 +80,44 @@ func TestPlaceWhereTimesTie(t *testing.T) {
 		})
 	}
 }
+
+// A turn of a predicted course lies between two knots of its path: what it does there is seen. The level lies between the
+// lowest (highest) knot and the true extreme, which the solver itself gives every 0.5 s.
+func TestTurnBetweenKnotsIsSeen(t *testing.T) {
+	h := solve(t, model.Slab, model.Size{ThicknessM: 0.06}, 75,
+		filmStep(model.HoldHot, 20, 5, 30), filmStep(model.HoldHot, 60, 110, 60))
+	h.ErrorK = 0
+	place := model.Place{}
+	at := Where{Name: "here"}
+	h.Points = append(h.Points, model.Point{Name: "here", Place: place})
+	knots, low := math.Inf(1), math.Inf(1)
+	for _, x := range newCourses(h).path(place).c {
+		knots = math.Min(knots, x)
+	}
+	for _, x := range readEvery(h, place, 0.5).c {
+		low = math.Min(low, x)
+	}
+	if knots-low < 1e-5 {
+		t.Fatalf("the lowest knot %.7f °C is the extreme %.7f °C: nothing to see", knots, low)
+	}
+	level := (knots + low) / 2
+	for _, tt := range []struct {
+		name string
+		l    Limit
+	}{
+		{"hold, longest period", Limit{Kind: Hold, FromC: &level, TimeS: min_(79), Counting: Continuous}},
+		{"outside", Limit{Kind: Outside, FromC: c(level - 20), ToC: &level}},
+		{"stay above, no time beyond", Limit{Kind: StayAbove, FromC: &level, TimeS: c(0)}},
+	} {
+		t.Run(tt.name, func(t *testing.T) {
+			tt.l.Where = at
+			f := one(t, tt.l, h)
+			if f.Verdict != NotMet {
+				t.Errorf("%v (%s), want not met", f.Verdict, f.Why)
+			}
+			if f.MarginK != nil && *f.MarginK > 0 {
+				t.Errorf("not met with %g K of room", *f.MarginK)
+			}
+		})
+	}
+}
