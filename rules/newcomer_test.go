@@ -177,3 +177,29 @@ func TestMarginOfAnotherPlace(t *testing.T) {
 		t.Errorf("%s: %v", f.Why, f.Notes)
 	}
 }
+
+// TestPredictedStartAtFrom does the same with a calculated course, whose error may be smaller than any difference of places.
+func TestPredictedStartAtFrom(t *testing.T) {
+	h := solve(t, model.Slab, model.Size{ThicknessM: 0.06}, 60, filmStep(model.Cool, 300, 2, 40))
+	for _, x := range []struct {
+		name    string
+		from    float64
+		minutes float64
+		want    Verdict
+	}{
+		{"exactly at From, too slow", 60, 60, CannotTell},
+		{"exactly at From, in time", 60, 300, NotApplicable},
+		{"well below From", 63, 60, NotApplicable},
+		{"above From, too slow", 59, 60, NotMet},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			f := one(t, Limit{Kind: CoolWithin, FromC: c(x.from), ToC: c(10), TimeS: min_(x.minutes), Clock: crossing}, h)
+			if f.Verdict != x.want {
+				t.Errorf("%v: %s", f.Verdict, f.Why)
+			}
+			if x.want == CannotTell && (f.Place == nil || !strings.Contains(f.Why, "clock starts")) {
+				t.Errorf("%v %s", f.Place, f.Why)
+			}
+		})
+	}
+}
