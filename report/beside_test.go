@@ -102,3 +102,58 @@ func TestDecidingRow(t *testing.T) {
 		t.Error(s)
 	}
 }
+
+// TestMissingGlyph keeps the sentence of the footer beside the warning of a character that the font lacks.
+func TestMissingGlyph(t *testing.T) {
+	h, p := roastHead(), roast(t, model.Brick, rules.Met)
+	p.Product.Name, h.Problems = "Pork 𓀀 loin", nil
+	first, _, _ := strings.Cut(pdfText(t, productPDF(t, h, p)), "Report for the audit")
+	for _, w := range []string{"Warning: the font cannot show", say("footer not measured")} {
+		if !strings.Contains(first, w) {
+			t.Errorf("page 1 lacks %q", w)
+		}
+	}
+	var b bytes.Buffer
+	if err := WriteSummaryPDF(&b, h, []Row{p.Row()}); err != nil {
+		t.Fatal(err)
+	}
+	if s := pdfText(t, b.Bytes()); strings.Contains(s, say("summary no problem")) || !strings.Contains(s, say("footer not measured")) {
+		t.Error("the overview says that nothing was noted, or lost its footer")
+	}
+}
+
+// TestVacuous lets a limited time of which nothing was used neither decide nor be checked with the probe.
+func TestVacuous(t *testing.T) {
+	p := roast(t, model.Brick, rules.Met)
+	f := &p.Judgement.Findings[0]
+	f.Limit.Kind, f.Value, f.Required, f.MarginK, f.MarginS = rules.Band, ptr(0.), ptr(2.), ptr(0.1), ptr(1.)
+	if d := p.decides().finding; d == f || !vacuous(f) {
+		t.Errorf("%s decides", d.Limit.Name)
+	}
+	x := &sheet{doc: newDoc(roastHead(), "T"), p: p, decides: p.decides(), order: p.worstFirst()}
+	checks := strings.Join(x.checks(), "\n")
+	if strings.Contains(checks, "Throughout") || strings.Contains(checks, "93 min") || !strings.Contains(checks, "the model expects") {
+		t.Error(checks)
+	}
+}
+
+// TestFilmStandsForEvaporation gives no caution on evaporation where the typed coefficient stands for everything.
+func TestFilmStandsForEvaporation(t *testing.T) {
+	for _, x := range []struct {
+		surface *model.Surface
+		want    bool
+	}{{model.Film, false}, {model.StillAir, true}} {
+		p := roast(t, model.Brick, rules.Met)
+		for i := range p.Steps {
+			p.Steps[i].Surface = x.surface
+			p.History.Spans[i].Step = &p.Steps[i]
+		}
+		got := false
+		for _, c := range Cautions(roastHead(), p) {
+			got = got || c.Key == "evaporation left out"
+		}
+		if got != x.want {
+			t.Errorf("%s: %v", x.surface.Name, got)
+		}
+	}
+}
