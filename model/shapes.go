@@ -17,9 +17,9 @@ var (
 	Bar           = &Shape{Name: "bar", Needs: []string{"Thickness", "Width"}, Faces: []*Face{Top, Underside, Sides}, Help: "long and rectangular: heat crosses thickness and width"}
 	Brick         = &Shape{Name: "brick", Needs: []string{"Thickness", "Width", "Length"}, Faces: []*Face{Top, Underside, Sides, Ends}, Help: "joints, blocks, portions: heat crosses all six faces"}
 	Spheroid      = &Shape{Name: "spheroid", Needs: []string{"Thickness", "Diameter"}, Help: "eggs, potatoes (thickness along the axis)",
-		Refused: "this shape cannot be calculated yet, so the product is not"}
+		Refused: "is a shape that cannot be calculated yet"}
 	LayeredSlab = &Shape{Name: "layered slab", Help: "layers of different foods", Faces: []*Face{Top, Underside},
-		Refused: "this shape cannot be calculated yet, so the product is not"}
+		Refused: "is a shape that cannot be calculated yet"}
 	Stirred = &Shape{Name: "stirred", Needs: []string{"Volume", "Surface area"}, Help: "well mixed throughout: soups and sauces that are stirred all the time"}
 
 	Shapes = []*Shape{Slab, Cylinder, Sphere, ShortCylinder, Bar, Brick, Spheroid, LayeredSlab, Stirred}
