@@ -182,3 +182,126 @@ func TestMarginsAgreeWithVerdict(t *testing.T) {
 		t.Errorf("the draws decide too little: %v", seen)
 	}
 }
+
+// A chill medium raised to the freezing point gives temperatures that the food is at or below: that proves no failure of a
+// limit which colder food meets, unless it was missed before the chill, and every failure of one which colder food misses too.
+func TestBoundProvesNoFailureOfColdLimits(t *testing.T) {
+	props := model.Properties{KWmK: 0.47, RhoKgM3: 1050, CJkgK: 3500}
+	food := &model.Material{Name: "test food", Source: "test input", Props: func(float64) model.Properties { return props }, FreezingC: c(-1)}
+	chilled := func(restMin float64) *model.History {
+		h, err := model.Solve(model.Product{Name: "P", Shape: model.Slab, Size: model.Size{ThicknessM: 0.06}, Food: food, StartC: 75},
+			[]model.Step{filmStep(model.Rest, restMin, 20, 10), filmStep(model.Cool, 120, -30, 30)}, model.Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if h.Bound == "" || math.Abs(h.BoundFromS-60*restMin) > 1e-6 {
+			t.Fatalf("bound %q from %g s", h.Bound, h.BoundFromS)
+		}
+		return h
+	}
+	short, long := chilled(10), chilled(240)
+	cool := []*model.Stage{model.Cool}
+	fall := Limit{Kind: CoolWithin, FromC: c(60), ToC: c(5), TimeS: min_(90), Clock: Clock{Crossing: true}}
+	exposed := Limit{Kind: Band, FromC: c(5), ToC: c(60), TimeS: min_(90), Counting: Total}
+	for _, tt := range []struct {
+		name string
+		h    *model.History
+		l    Limit
+		want Verdict
+	}{
+		{"cool", short, fall, CannotTell},
+		{"cool, the time had run out before", long, fall, NotMet},
+		{"hold in the cold", short, Limit{Kind: Hold, ToC: c(-18), TimeS: c(0), Counting: Total}, CannotTell},
+		{"stay below", short, Limit{Kind: StayBelow, Stages: cool, ToC: c(3), TimeS: min_(30)}, CannotTell},
+		{"stay below, too warm before", short, Limit{Kind: StayBelow, ToC: c(3), TimeS: min_(5)}, NotMet},
+		{"end", short, Limit{Kind: ByTheEnd, Stages: cool, ToC: c(-5)}, CannotTell},
+		{"band", short, exposed, CannotTell},
+		{"band, too long before", long, exposed, NotMet},
+		{"freeze", short, Limit{Kind: FreezeHold, Stages: cool, FromC: c(-2), TimeS: min_(5), ToC: c(-18), SecondS: min_(5)}, CannotTell},
+		{"hold in the heat", short, Limit{Kind: Hold, FromC: c(80), TimeS: min_(2), Counting: Total}, NotMet},
+		{"stay above", short, Limit{Kind: StayAbove, FromC: c(63)}, NotMet},
+	} {
+		t.Run(tt.name, func(t *testing.T) {
+			if f := one(t, tt.l, tt.h); f.Verdict != tt.want {
+				t.Errorf("%v (%s), want %v", f.Verdict, f.Why, tt.want)
+			}
+		})
+	}
+}
+
+// Of two findings with the same verdict the one with less room is less favourable: by time, and where that is equal by temperature.
+func TestLessFavourable(t *testing.T) {
+	for _, tt := range []struct {
+		name string
+		a, b Finding
+		want bool
+	}{
+		{"verdict first", Finding{Verdict: NotMet, MarginS: c(9)}, Finding{Verdict: Met, MarginS: c(1)}, true},
+		{"less time", Finding{Verdict: Met, MarginS: c(1), MarginK: c(5)}, Finding{Verdict: Met, MarginS: c(2), MarginK: c(1)}, true},
+		{"more time", Finding{Verdict: Met, MarginS: c(2), MarginK: c(1)}, Finding{Verdict: Met, MarginS: c(1), MarginK: c(5)}, false},
+		{"equal time, less room", Finding{Verdict: NotMet, MarginS: c(-600), MarginK: c(-12)}, Finding{Verdict: NotMet, MarginS: c(-600), MarginK: c(-10)}, true},
+		{"equal time, more room", Finding{Verdict: NotMet, MarginS: c(-600), MarginK: c(-10)}, Finding{Verdict: NotMet, MarginS: c(-600), MarginK: c(-12)}, false},
+		{"no time", Finding{Verdict: Met, MarginK: c(1)}, Finding{Verdict: Met, MarginK: c(2)}, true},
+		{"alike", Finding{Verdict: Met, MarginS: c(1), MarginK: c(1)}, Finding{Verdict: Met, MarginS: c(1), MarginK: c(1)}, false},
+	} {
+		t.Run(tt.name, func(t *testing.T) {
+			if got := lessFavourable(tt.a, tt.b); got != tt.want {
+				t.Errorf("%v", got)
+			}
+		})
+	}
+}
+
+// A limit is met only where it is met with every temperature moved by the error: the finding of a predicted food without an
+// error band, judged with its levels moved by 0.04 K, must be met wherever the one with an error band of 0.04 K is.
+func TestMetHoldsAtUnfavourableEnd(t *testing.T) {
+	rnd := rand.New(rand.NewSource(11))
+	met, told := 0, 0
+	for n := 0; n < 6; n++ {
+		h := unlike(t, 5, filmStep(model.Cook, 60, 90+20*rnd.Float64(), 30), filmStep(model.Cool, 200, 2, 20))
+		for k := 0; k < 12; k++ {
+			// From near what some place only just reaches, so that the clock of another place decides
+			from, to := 50+25*rnd.Float64(), 8+25*rnd.Float64()
+			for _, kind := range []*Kind{CoolWithin, Band, Hold} {
+				l := Limit{Kind: kind, FromC: &from, ToC: &to, Clock: Clock{Crossing: true}}
+				moved := Limit{Kind: kind, FromC: c(from + 0.04), ToC: c(to - 0.04), Clock: Clock{Crossing: true}}
+				switch kind {
+				case Band:
+					l = Limit{Kind: kind, FromC: &to, ToC: &from, Counting: Total}
+					moved = Limit{Kind: kind, FromC: c(to - 0.04), ToC: c(from + 0.04), Counting: Total}
+				case Hold:
+					l = Limit{Kind: kind, FromC: &from, Counting: Total}
+					moved = Limit{Kind: kind, FromC: c(from + 0.04), Counting: Total}
+				}
+				l.TimeS = min_(1000)
+				h.ErrorK = 0
+				f := one(t, l, h)
+				if f.Value == nil {
+					continue
+				}
+				// the time at the very edge of what is met
+				time := 60 * *f.Value * (1 + 2e-3*rnd.Float64())
+				if kind == Hold {
+					time = 60 * *f.Value * (1 - 2e-3*rnd.Float64())
+				}
+				l.TimeS, moved.TimeS = &time, &time
+				if time == 0 {
+					continue
+				}
+				edge := one(t, moved, h)
+				h.ErrorK = 0.04
+				switch f := one(t, l, h); {
+				case f.Verdict == Met && edge.Verdict == NotMet:
+					t.Errorf("%s of %g and %g °C met within the error, not at its end: %s", kind.Name, from, to, edge.Why)
+				case f.Verdict == Met:
+					met++
+				case f.Verdict == CannotTell:
+					told++
+				}
+			}
+		}
+	}
+	if told < 10 {
+		t.Errorf("met %d, cannot tell %d: too little turns on the error", met, told)
+	}
+}
