@@ -305,3 +305,29 @@ func TestMetHoldsAtUnfavourableEnd(t *testing.T) {
 		t.Errorf("met %d, cannot tell %d: too little turns on the error", met, told)
 	}
 }
+
+// The place that decides at the unfavourable end need not be one that is near to deciding as read: two places have just enough,
+// a third has plenty, but by 0.02 K only, and the error is 0.04 K.
+func TestThirdPlaceDecidesWithinError(t *testing.T) {
+	hold := records(t, "cook 0-100", trace(t, "a", 0, "0:50 10:50 10.5:80 22:80 22.5:50 100:50"),
+		trace(t, "b", 5, "0:50 10:50 10.5:80 23:80 23.5:50 100:50"), trace(t, "c", 10, "0:63.02 100:63.02"))
+	band := records(t, "cool 0-100", trace(t, "a", 0, "0:70 10:70 10.5:30 65:30 65.5:2 100:2"),
+		trace(t, "b", 5, "0:70 10:70 10.5:30 64:30 64.5:2 100:2"), trace(t, "c", 10, "0:60.02 100:60.02"))
+	for _, tt := range []struct {
+		name string
+		h    *model.History
+		l    Limit
+	}{
+		{"by its own temperature", hold, Limit{Kind: Hold, FromC: c(63), TimeS: min_(10), Counting: Total}},
+		{"by another", band, Limit{Kind: Band, FromC: c(5), ToC: c(60), TimeS: min_(60), Counting: Total}},
+	} {
+		t.Run(tt.name, func(t *testing.T) {
+			for errK, want := range map[float64]Verdict{0.04: CannotTell, 0.01: Met} {
+				tt.h.ErrorK = errK
+				if f := one(t, tt.l, tt.h); f.Verdict != want {
+					t.Errorf("error %g K: %v (%s), want %v", errK, f.Verdict, f.Why, want)
+				}
+			}
+		})
+	}
+}
