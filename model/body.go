@@ -101,6 +101,12 @@ const flatK = 1e-7
 // extremes finds the coldest and hottest place anywhere in the food: among the nodes first, then along the axes between them.
 func (b *body) extremes(s snapshot) (low, high extreme) {
 	s.grid(b.buf)
+	lo, hi := b.lowest()
+	return b.polish(s, lo, 1), b.polish(s, hi, -1)
+}
+
+// lowest gives the coldest and hottest of the nodes in buf; of those that are as cold or hot the nearest to the centre.
+func (b *body) lowest() (lo, hi int) {
 	cold, hot := b.buf[0], b.buf[0]
 	for _, c := range b.buf {
 		if c < cold {
@@ -109,7 +115,7 @@ func (b *body) extremes(s snapshot) (low, high extreme) {
 			hot = c
 		}
 	}
-	lo, hi := -1, -1 // the nearest to the centre of those that are as cold and as hot
+	lo, hi = -1, -1
 	for _, i := range b.order {
 		if lo < 0 && b.buf[i] <= cold+flatK {
 			lo = i
@@ -121,7 +127,7 @@ func (b *body) extremes(s snapshot) (low, high extreme) {
 			break
 		}
 	}
-	return b.polish(s, lo, 1), b.polish(s, hi, -1)
+	return lo, hi
 }
 
 // polish moves from a node to the extreme beside it; sign 1 looks for the coldest, -1 for the hottest.
@@ -432,6 +438,10 @@ func (h *History) Sample(everyS float64) Samples {
 	}
 	s.Coldest, s.Hottest, s.Mean = make([]float64, n), make([]float64, n), make([]float64, n)
 	s.ColdestAt, s.HottestAt = make([]Place, n), make([]Place, n)
+	if f, ok := h.field.(*tensor); ok && f.single() && f.axes[0].kind != lumped {
+		f.sampleLine(h, &s)
+		return s
+	}
 	for i, t := range s.TimesS {
 		shot := h.field.at(t)
 		low, high := h.body.extremes(shot)
