@@ -102,7 +102,53 @@ const flatK = 1e-7
 func (b *body) extremes(s snapshot) (low, high extreme) {
 	s.grid(b.buf)
 	lo, hi := b.lowest()
-	return b.polish(s, lo, 1), b.polish(s, hi, -1)
+	reach := rivalShare * (b.buf[hi] - b.buf[lo])
+	low, high = b.polish(s, lo, 1), b.polish(s, hi, -1)
+	if i := b.rival(lo, 1, reach, low.c); i >= 0 {
+		if e := b.polish(s, i, 1); e.c < low.c-flatK {
+			low = e
+		}
+	}
+	if i := b.rival(hi, -1, reach, high.c); i >= 0 {
+		if e := b.polish(s, i, -1); e.c > high.c+flatK {
+			high = e
+		}
+	}
+	return low, high
+}
+
+// rivalShare is how far behind the best node another may lie, as a share of the spread of all, and still hide a better place beside it.
+const rivalShare = 0.15
+
+// rival finds another node, lower than its neighbours, beside which a parabola promises a better place than best (°C); -1 if none.
+func (b *body) rival(first int, sign, reach, best float64) int {
+	stride := [3]int{len(b.nodes.x[1]) * len(b.nodes.x[2]), len(b.nodes.x[2]), 1}
+	found, most := -1, sign*best-flatK
+	level := sign*b.buf[first] + reach
+	for i, c := range b.buf {
+		if sign*c > level || i == first {
+			continue
+		}
+		g, promise := b.index(i), sign*c
+		for a := range g {
+			xs := b.nodes.x[a]
+			if b.kinds[a] == lumped {
+				continue
+			}
+			lo, hi := max(g[a]-1, 0), min(g[a]+1, len(xs)-1)
+			f := [3]float64{sign * b.buf[i+(lo-g[a])*stride[a]], sign * c, sign * b.buf[i+(hi-g[a])*stride[a]]}
+			if f[0] < f[1] || f[2] < f[1] {
+				promise = math.Inf(1)
+				break
+			}
+			v := valleyOf([3]float64{xs[lo], xs[g[a]], xs[hi]}, f)
+			promise -= v.bend * (v.start - v.mid) * (v.start - v.mid)
+		}
+		if promise < most {
+			found, most = i, promise
+		}
+	}
+	return found
 }
 
 // lowest gives the coldest and hottest of the nodes in buf; of those that are as cold or hot the nearest to the centre.

@@ -103,5 +103,17 @@ func (f *tensor) ends(b *body, t float64) (low, high extreme) {
 		}
 		return b.descend(shot, node, [3]int{node}, [3]int{1}, [3]bool{false, true, true}, sign)
 	}
-	return at(lo, 1), at(hi, -1)
+	low, high = at(lo, 1), at(hi, -1)
+	reach := rivalShare * (b.buf[hi] - b.buf[lo])
+	if i := b.rival(lo, 1, reach, low.c); i >= 0 {
+		if e := at(i, 1); e.c < low.c-flatK {
+			low = e
+		}
+	}
+	if i := b.rival(hi, -1, reach, high.c); i >= 0 {
+		if e := at(i, -1); e.c > high.c+flatK {
+			high = e
+		}
+	}
+	return low, high
 }

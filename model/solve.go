@@ -174,7 +174,7 @@ func (s *solver) grid(degrees func(a int) int, coarse bool) (axes [3]*axis, nd *
 	nd = &nodes{}
 	for a := range axes {
 		axes[a] = &axis{base: baseOf(s.kinds[a], degrees(a)), radiusM: s.radii[a], lower: s.faces[a][0], upper: s.faces[a][1]}
-		nd.x[a] = nodesOf(s.kinds[a], s.used, coarse)
+		nd.x[a] = nodesOf(s.kinds[a], s.used, axes[a].n, coarse)
 		n := axes[a].n
 		nd.phi[a] = make([]float64, n*len(nd.x[a]))
 		for g, x := range nd.x[a] {
@@ -184,14 +184,20 @@ func (s *solver) grid(degrees func(a int) int, coarse bool) (axes [3]*axis, nd *
 	return axes, nd
 }
 
-// nodesOf places the nodes of an axis: they crowd towards the faces.
-func nodesOf(kind axisKind, used int, coarse bool) []float64 {
+// nodesOf places the nodes of an axis with functions polynomials: they crowd towards the faces, and are close enough for the
+// waves that so many polynomials can make.
+func nodesOf(kind axisKind, used, functions int, coarse bool) []float64 {
 	if kind == lumped {
 		return []float64{0}
 	}
 	n := [4]int{0, 13, 9, 7}[used]
 	if coarse {
 		n = [4]int{0, 7, 6, 4}[used]
+	} else {
+		if kind == planeFull {
+			functions = (functions + 1) / 2
+		}
+		n = max(n, [4]int{0, 7, 7, 4}[used]*functions/10)
 	}
 	if kind == planeFull {
 		n = 2*n - 1

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"regexp"
+	"slices"
 	"strings"
 	"testing"
 
@@ -295,6 +296,9 @@ func TestCollinear(t *testing.T) {
 		h, times, temps := drawn(rt)
 		l := drawnLimit(rt)
 		a := judged(l, h)
+		if slices.Contains(a.Cautions, "sparse record") {
+			return // more readings are what is asked for there
+		}
 		var t2, c2 []float64
 		for i := range times {
 			t2, c2 = append(t2, times[i]), append(c2, temps[i])
