@@ -5,6 +5,7 @@ import (
 	"bytes"
 	"encoding/json"
 	"errors"
+	"fmt"
 	"io"
 	"math"
 	"strconv"
@@ -26,6 +27,7 @@ type JSON struct {
 	buf      *bufio.Writer // in front of the spool
 	n        int
 	line     []byte // scratch
+	fault    error  // the first values that could not be written
 }
 
 // NewJSON makes a writer of results.json; nothing reaches w before Close.
@@ -163,7 +165,7 @@ func (j *JSON) Add(p *Product) error {
 	list(j, "cautions", cautionsOf(Cautions(j.h, p)), false)
 	list(j, "input", readingsOf(p.Readings), true)
 	j.put("  }")
-	return j.buf.Flush()
+	return errors.Join(j.buf.Flush(), j.fault)
 }
 
 // samples writes the courses.
@@ -189,7 +191,7 @@ func (j *JSON) samples(p *Product) {
 			j.put(",")
 		}
 		j.put("\n      {\"point\": ")
-		j.buf.Write(encode(pt.Name))
+		j.buf.Write(j.encode(pt.Name))
 		j.put(", \"at_mm\": ")
 		j.line = appendPlace(j.line[:0], pt.Place)
 		j.line = append(j.line, `, "C": `...)
@@ -214,7 +216,7 @@ func (j *JSON) Close() error {
 	j.text("schema", Schema)
 	j.text("version", j.h.Version)
 	j.text("date", isoDate(j.h))
-	j.value("plan", planJSON{Name: j.h.Plan, SHA256: j.h.SHA256, Items: itemsOf(j.h.Items)})
+	j.value("plan", planJSON{Name: j.h.Plan, SHA256: j.h.SHA256, Items: j.itemsOf(j.h.Items)})
 	j.value("every_s", exactNumber(&j.h.EveryS))
 	list(j, "problems", problemsOf(j.h.Problems), false)
 	list(j, "not_calculated", notCalculatedOf(j.h.NotCalculated), false)
@@ -227,7 +229,7 @@ func (j *JSON) Close() error {
 		return err
 	}
 	j.put("]\n}\n")
-	return j.buf.Flush()
+	return errors.Join(j.buf.Flush(), j.fault)
 }
 
 func (j *JSON) put(s string)       { _, _ = j.buf.WriteString(s) } // the writer keeps the first error for Flush
@@ -235,7 +237,7 @@ func (j *JSON) text(key, s string) { j.value(key, s) }
 
 func (j *JSON) value(key string, v any) {
 	j.put("    \"" + key + "\": ")
-	j.buf.Write(encode(v))
+	j.buf.Write(j.encode(v))
 	j.put(",\n")
 }
 
@@ -247,7 +249,7 @@ func list[T any](j *JSON, key string, items []T, last bool) {
 			j.put(",")
 		}
 		j.put("\n      ")
-		j.buf.Write(encode(items[i]))
+		j.buf.Write(j.encode(items[i]))
 	}
 	if j.put("]"); !last {
 		j.put(",")
@@ -321,13 +323,14 @@ func appendPlace(b []byte, p model.Place) []byte {
 	return append(appendNumber(b, p.AlongM*1000, 4), ']')
 }
 
-// encode writes a value as JSON without escaping <, > and &.
-func encode(v any) []byte {
+// encode writes a value as JSON without escaping <, > and &. What cannot be written is kept as the fault that Add and Close return.
+func (j *JSON) encode(v any) []byte {
 	var b bytes.Buffer
 	e := json.NewEncoder(&b)
 	e.SetEscapeHTML(false)
 	if err := e.Encode(v); err != nil {
-		panic("results.json: " + err.Error()) // only strings, booleans and numbers made here: cannot happen
+		j.fault = errors.Join(j.fault, fmt.Errorf("results.json: %w", err))
+		return []byte("null")
 	}
 	return bytes.TrimRight(b.Bytes(), "\n")
 }
@@ -357,7 +360,7 @@ func join(anyOf bool) string {
 	return "all of"
 }
 
-func itemsOf(items []Item) json.RawMessage {
+func (j *JSON) itemsOf(items []Item) json.RawMessage {
 	b, seen := []byte("{"), map[string]bool{}
 	for _, it := range items {
 		if seen[it.Item] {
@@ -367,8 +370,8 @@ func itemsOf(items []Item) json.RawMessage {
 			b = append(b, ", "...)
 		}
 		seen[it.Item] = true
-		b = append(append(b, encode(it.Item)...), ": "...)
-		b = append(b, encode(it.Value)...)
+		b = append(append(b, j.encode(it.Item)...), ": "...)
+		b = append(b, j.encode(it.Value)...)
 	}
 	return append(b, '}')
 }

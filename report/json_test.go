@@ -331,3 +331,13 @@ func BenchmarkStreams(b *testing.B) {
 		})
 	}
 }
+
+// A value that JSON cannot hold is an error of the document, not a gap in it and not a crash.
+func TestJSONFault(t *testing.T) {
+	var b bytes.Buffer
+	j := NewJSON(&b, &Head{})
+	j.value("x", json.RawMessage("NaN"))
+	if err := j.Close(); err == nil {
+		t.Error("a value that is no JSON went unseen")
+	}
+}

@@ -2,7 +2,6 @@ package report
 
 import (
 	"bytes"
-	"os"
 	"os/exec"
 	"regexp"
 	"strconv"
@@ -22,13 +21,7 @@ type box struct {
 // pageBoxes are the words of a PDF page by page, and the size of the page in pt.
 func pageBoxes(t *testing.T, pdf []byte) (pages [][]box, wide, tall float64) {
 	t.Helper()
-	tool, err := exec.LookPath("pdftotext")
-	if err != nil {
-		if os.Getenv("CI") != "" {
-			t.Fatal("pdftotext is missing")
-		}
-		t.Skip("pdftotext is missing")
-	}
+	tool := pdftotext(t)
 	cmd := exec.Command(tool, "-bbox", "-", "-")
 	cmd.Stdin = bytes.NewReader(pdf)
 	out, err := cmd.Output()

@@ -110,8 +110,8 @@ func keep(t testing.TB, pdf []byte) {
 	}
 }
 
-// pdfText gives the text of a PDF, with runs of blanks made one.
-func pdfText(t *testing.T, pdf []byte) string {
+// pdftotext finds the tool; without it the test is skipped, and fails in CI.
+func pdftotext(t *testing.T) string {
 	t.Helper()
 	tool, err := exec.LookPath("pdftotext")
 	if err != nil {
@@ -120,6 +120,13 @@ func pdfText(t *testing.T, pdf []byte) string {
 		}
 		t.Skip("pdftotext is missing")
 	}
+	return tool
+}
+
+// pdfText gives the text of a PDF, with runs of blanks made one.
+func pdfText(t *testing.T, pdf []byte) string {
+	t.Helper()
+	tool := pdftotext(t)
 	cmd := exec.Command(tool, "-layout", "-", "-")
 	cmd.Stdin = bytes.NewReader(pdf)
 	out, err := cmd.Output()

@@ -83,14 +83,9 @@ func (r *reader) hang(l *line, pr *process, s *step, f *face, prodName string) {
 		}
 		return
 	}
-	p := r.byName[key(prodName)]
-	switch {
-	case p == nil:
-		l.fault("Product", prodName, productUnknown, r.offer(prodName, r.productNames))
-		r.concern(pr, "", l.because) // whose row it is is not known: without it any product of the process may be wrong
+	p := r.productOf(l, pr, prodName)
+	if p == nil {
 		return
-	case key(p.Process) != key(pr.name):
-		l.fault("Product", prodName, otherProcess, strconv.Quote(p.Process))
 	}
 	if p.faces == nil {
 		p.faces = map[string][]*face{}

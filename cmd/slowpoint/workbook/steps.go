@@ -120,18 +120,27 @@ func (r *reader) orphan(t *table, i int, users map[string][]*product) {
 	}
 }
 
-// stepOfProduct keeps a row that replaces a step for one product.
-func (r *reader) stepOfProduct(l *line, pr *process, s *step, name string) {
+// productOf finds the product that a row of a process names, and says so where there is none or where it goes through another process.
+func (r *reader) productOf(l *line, pr *process, name string) *product {
 	p := r.byName[key(name)]
 	switch {
 	case p == nil:
 		l.fault("Product", name, productUnknown, r.offer(name, r.productNames))
 		r.concern(pr, "", l.because) // whose row it is is not known: without it any product of the process may be wrong
-		return
 	case key(p.Process) != key(pr.name):
 		l.fault("Product", name, otherProcess, strconv.Quote(p.Process))
-	case p.own[key(s.Name)] != nil:
-		l.fault("Step", s.Name, stepTwice, pr.name+" for this product", strconv.Itoa(p.own[key(s.Name)].At.Row))
+	}
+	return p
+}
+
+// stepOfProduct keeps a row that replaces a step for one product.
+func (r *reader) stepOfProduct(l *line, pr *process, s *step, name string) {
+	p := r.productOf(l, pr, name)
+	if p == nil {
+		return
+	}
+	if first := p.own[key(s.Name)]; first != nil && key(p.Process) == key(pr.name) {
+		l.fault("Step", s.Name, stepTwice, pr.name+" for this product", strconv.Itoa(first.At.Row))
 	}
 	if p.own == nil {
 		p.own = map[string]*step{}
