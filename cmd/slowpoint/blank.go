@@ -13,7 +13,7 @@ import (
 	"slowpoint/cmd/slowpoint/workbook"
 )
 
-func blankCommand() *cobra.Command {
+func blankCommand(files *shelf) *cobra.Command {
 	var demo bool
 	cmd := &cobra.Command{
 		Use: "blank FILE.xlsx", Short: "Write an empty plan workbook with headings, units, notes and lists to choose from",
@@ -25,7 +25,7 @@ func blankCommand() *cobra.Command {
 			if err := newFile(args[0]); err != nil {
 				return err
 			}
-			if err := writeWhole(args[0], func(w io.Writer) error { return workbook.WriteBlank(w, demo) }); err != nil {
+			if err := files.writeWhole(args[0], func(w io.Writer) error { return workbook.WriteBlank(w, demo) }); err != nil {
 				return &failure{exitFault, err}
 			}
 			fmt.Fprintf(cmd.OutOrStdout(), "%s is ready: fill it in, then run slowpoint check %s\n", args[0], args[0])

@@ -30,12 +30,12 @@ type checkOptions struct {
 	onePDF, noPDF           bool
 }
 
-func checkCommand() *cobra.Command {
+func checkCommand(files *shelf) *cobra.Command {
 	var o checkOptions
 	cmd := &cobra.Command{
 		Use: "check [PLAN]", Short: "Calculate a plan, judge its limits and write the report; without PLAN, the built-in demo",
 		Example: "  slowpoint check\n  slowpoint check plan.xlsx --out results", Args: onePlan(0),
-		RunE: func(cmd *cobra.Command, args []string) error { return check(cmd, args, &o) },
+		RunE: func(cmd *cobra.Command, args []string) error { return check(cmd, args, &o, files) },
 	}
 	f := cmd.Flags()
 	f.StringVar(&o.out, "out", "", "`FOLDER` of the results (default PLAN-results beside the plan)")
@@ -49,7 +49,7 @@ func checkCommand() *cobra.Command {
 }
 
 // check is the main job.
-func check(cmd *cobra.Command, args []string, o *checkOptions) error {
+func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) error {
 	plan, folder, err := readPlan(args, o)
 	if err != nil {
 		return err
@@ -61,18 +61,15 @@ func check(cmd *cobra.Command, args []string, o *checkOptions) error {
 	if err := keepOnly(plan, o.only); err != nil {
 		return err
 	}
-	if err := makeFolder(folder); err != nil {
+	if err := files.makeFolder(folder); err != nil {
 		return &failure{exitFault, err}
 	}
 	for _, k := range known() {
 		head.Known = append(head.Known, k.KnownAnswer)
 	}
 	head.Products = len(plan.Products)
-	r := &runner{ctx: cmd.Context(), plan: plan, head: head, folder: folder, options: o, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
+	r := &runner{shelf: files, plan: plan, head: head, folder: folder, options: o, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
 	if err := r.all(); err != nil {
-		if errors.Is(err, context.Canceled) {
-			return &failure{exitFault, fmt.Errorf("stopped: the product reports that were finished are whole in %s; summary, results and report.txt of this run were not written", folder)}
-		}
 		return &failure{exitFault, err}
 	}
 	tellProblems(cmd.ErrOrStderr(), head.Problems)
@@ -194,7 +191,7 @@ func progress(errs io.Writer, n int) *progressbar.ProgressBar {
 
 // runner takes the products of a plan through the whole job.
 type runner struct {
-	ctx      context.Context
+	shelf    *shelf
 	plan     *workbook.Plan
 	head     *report.Head
 	folder   string
@@ -216,17 +213,18 @@ func (r *runner) all() error {
 		names[i] = r.plan.Products[i].Name
 	}
 	r.files = fileNames(names)
-	jsonFile, err := newSpool(r.folder, "results.json")
+	r.expect()
+	jsonFile, err := r.shelf.spool(r.path("results.json"))
 	if err != nil {
 		return err
 	}
 	defer jsonFile.drop()
-	bookFile, err := newSpool(r.folder, "results.xlsx")
+	bookFile, err := r.shelf.spool(r.path("results.xlsx"))
 	if err != nil {
 		return err
 	}
 	defer bookFile.drop()
-	textFile, err := newSpool(r.folder, "report.txt")
+	textFile, err := r.shelf.spool(r.path("report.txt"))
 	if err != nil {
 		return err
 	}
@@ -267,7 +265,7 @@ func (r *runner) all() error {
 	if r.options.noPDF {
 		return nil
 	}
-	return writeWhole(filepath.Join(r.folder, "summary.pdf"), func(w io.Writer) error {
+	return r.shelf.writeWhole(r.path("summary.pdf"), func(w io.Writer) error {
 		if !r.options.onePDF {
 			return report.WriteSummaryPDF(w, r.head, r.rows)
 		}
@@ -275,6 +273,24 @@ func (r *runner) all() error {
 			return r.each(false, func(d *done) error { return put(d.product) })
 		})
 	})
+}
+
+// path is the place of a results file.
+func (r *runner) path(name string) string { return filepath.Join(r.folder, name) }
+
+// expect tells the shelf which files the run is to write.
+func (r *runner) expect() {
+	r.shelf.expect(r.path("results.json"), r.path("results.xlsx"), r.path("report.txt"))
+	if r.options.noPDF {
+		return
+	}
+	r.shelf.expect(r.path("summary.pdf"))
+	if r.options.onePDF {
+		return
+	}
+	for _, f := range r.files {
+		r.shelf.expect(r.path(f + ".pdf"))
+	}
 }
 
 // done is one product after its calculation.
@@ -290,7 +306,7 @@ type done struct {
 // each calculates every product and hands them on in the order of the plan. Product reports are written on the way,
 // if wanted. The order of what is handed on does not depend on the number of processors.
 func (r *runner) each(reports bool, take func(*done) error) error {
-	ctx, cancel := context.WithCancel(r.ctx)
+	ctx, cancel := context.WithCancel(context.Background())
 	var working sync.WaitGroup
 	defer working.Wait() // nobody may be left who writes a file
 	defer cancel()
@@ -319,9 +335,6 @@ func (r *runner) each(reports bool, take func(*done) error) error {
 	})
 	for result := range queue {
 		d := <-result
-		if r.ctx.Err() != nil {
-			return r.ctx.Err()
-		}
 		if d.err != nil {
 			return d.err
 		}
@@ -334,7 +347,7 @@ func (r *runner) each(reports bool, take func(*done) error) error {
 			r.progress.Add(1)
 		}
 	}
-	return r.ctx.Err()
+	return nil
 }
 
 // refuse notes a product that turned out not to be calculable; first tells whether it is met for the first time.
@@ -365,7 +378,7 @@ func (r *runner) one(i int, reports bool) (d *done) {
 	if d.err != nil || !reports || r.options.noPDF || r.options.onePDF {
 		return d
 	}
-	d.err = writeWhole(filepath.Join(r.folder, d.file), func(w io.Writer) error {
+	d.err = r.shelf.writeWhole(r.path(d.file), func(w io.Writer) error {
 		return report.WriteProductPDF(w, r.head, d.product)
 	})
 	return d

@@ -13,7 +13,7 @@ import (
 // confirm is said wherever starter limits are shown.
 const confirm = "Starter limits are not legal advice: confirm each against the code in force where you are, and have it confirmed by the person who answers for it."
 
-func codesCommand() *cobra.Command {
+func codesCommand(files *shelf) *cobra.Command {
 	var where, stage string
 	cmd := &cobra.Command{
 		Use: "codes", Short: "List starter limits of published codes, to copy and confirm",
@@ -31,7 +31,7 @@ func codesCommand() *cobra.Command {
 			return nil
 		},
 	}
-	cmd.AddCommand(codesCopyCommand())
+	cmd.AddCommand(codesCopyCommand(files))
 	cmd.Flags().StringVar(&where, "where", "", "part of the name of a `PLACE`, issuer or document")
 	cmd.Flags().StringVar(&stage, "stage", "", "`STAGE`: cook, cool, hold hot, …")
 	return cmd

@@ -13,7 +13,7 @@ import (
 	"slowpoint/rules/codes"
 )
 
-func codesCopyCommand() *cobra.Command {
+func codesCopyCommand(files *shelf) *cobra.Command {
 	return &cobra.Command{
 		Use: "copy ID… PLAN.xlsx", Short: "Write a new workbook beside the plan, with starter limits added",
 		Example: "  slowpoint codes copy US-FC22-501.14-A1 plan.xlsx", Args: cobra.MinimumNArgs(2),
@@ -33,7 +33,7 @@ func codesCopyCommand() *cobra.Command {
 			}
 			var there, notCarried []string
 			var refused error
-			err = writeWhole(target, func(w io.Writer) error {
+			err = files.writeWhole(target, func(w io.Writer) error {
 				there, notCarried, refused = workbook.CopyRows(sheetRows(rows), plan, w)
 				return refused
 			})

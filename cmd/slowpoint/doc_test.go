@@ -129,7 +129,7 @@ func commands(c *cobra.Command) []*cobra.Command {
 
 func commandTable() string {
 	var rows [][]string
-	for _, c := range commands(rootCommand()) {
+	for _, c := range commands(rootCommand(new(shelf))) {
 		var flags []string
 		for _, line := range strings.Split(strings.TrimSpace(c.LocalFlags().FlagUsages()), "\n") {
 			if words := strings.Fields(line); len(words) > 0 {
@@ -392,7 +392,7 @@ func TestHelpExamples(t *testing.T) {
 			t.Fatalf("blank: exit code %d", code)
 		}
 	}
-	for _, c := range commands(rootCommand()) {
+	for _, c := range commands(rootCommand(new(shelf))) {
 		if c.Example == "" {
 			t.Errorf("%s has no example", c.CommandPath())
 		}

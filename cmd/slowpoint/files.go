@@ -1,49 +1,16 @@
 package main
 
 import (
-	"context"
 	"errors"
 	"fmt"
-	"io"
 	"os"
 	"path/filepath"
 	"strings"
 	"unicode"
 )
 
-// writeWhole writes a file whole or not at all: into a temporary file beside it, then renamed.
-func writeWhole(path string, write func(io.Writer) error) (err error) {
-	f, err := os.CreateTemp(filepath.Dir(path), ".slowpoint-*")
-	if err != nil {
-		return cannotWrite(path, err)
-	}
-	defer func() {
-		if err != nil {
-			f.Close()
-			os.Remove(f.Name())
-			err = cannotWrite(path, err)
-		}
-	}()
-	if err = write(f); err != nil {
-		return err
-	}
-	if err = f.Sync(); err != nil {
-		return err
-	}
-	if err = f.Close(); err != nil {
-		return err
-	}
-	if err = os.Chmod(f.Name(), 0o644); err != nil {
-		return err
-	}
-	return os.Rename(f.Name(), path)
-}
-
 // cannotWrite says which file could not be written and why, without the name of the temporary file.
 func cannotWrite(path string, err error) error {
-	if errors.Is(err, context.Canceled) {
-		return err
-	}
 	return fmt.Errorf("%s cannot be written (%w): choose another place, or make room", path, cause(err))
 }
 
@@ -61,16 +28,16 @@ func cause(err error) error {
 }
 
 // makeFolder makes the folder of the results and tries whether it takes files.
-func makeFolder(path string) error {
+func (s *shelf) makeFolder(path string) error {
 	if err := os.MkdirAll(path, 0o755); err != nil {
 		return cannotWrite(path, err)
 	}
-	f, err := os.CreateTemp(path, ".slowpoint-*")
+	f, err := s.begin(filepath.Join(path, "a file"))
 	if err != nil {
-		return cannotWrite(path, err)
+		return err
 	}
-	f.Close()
-	return os.Remove(f.Name())
+	s.drop(f)
+	return nil
 }
 
 // fileNames gives each product a file name of its own, without its ending: letters, digits, - and _ stay,

@@ -9,9 +9,11 @@ import (
 	"io"
 	"os"
 	"os/signal"
+	"sync"
 	"syscall"
 
 	"github.com/spf13/cobra"
+	"golang.org/x/term"
 )
 
 // The exit codes.
@@ -19,7 +21,7 @@ const (
 	exitMet    = 0 // every must limit is met for every product
 	exitNotMet = 1 // something is not met or cannot be told
 	exitInput  = 2 // the input, or part of it, could not be used
-	exitFault  = 3 // the results could not be written, or a fault of the program
+	exitFault  = 3 // the results could not be written, the run was stopped, or a fault of the program
 )
 
 // failure is an error with the exit code that it means. A failure without a cause has been told already.
@@ -42,15 +44,26 @@ func run(args []string, in io.Reader, out, errs io.Writer) int {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	defer stop()
 	context.AfterFunc(ctx, stop) // a second Ctrl-C ends the program at once
-	results := &told{Writer: out}
-	root := rootCommand()
+	results, files := &told{w: out}, &shelf{}
+	root := rootCommand(files)
 	root.SetArgs(args)
 	root.SetIn(in)
 	root.SetOut(results)
 	root.SetErr(errs)
-	err := root.ExecuteContext(ctx)
-	if results.err != nil {
-		err = &failure{exitFault, fmt.Errorf("what was asked for cannot be told (%w): send it elsewhere", cause(results.err))}
+	ended := make(chan error, 1)
+	go func() { ended <- root.ExecuteContext(ctx) }()
+	var err error
+	select {
+	case err = <-ended:
+	case <-ctx.Done(): // a calculation may take seconds: it is not waited for
+		results.close()
+		if f, ok := errs.(*os.File); ok && term.IsTerminal(int(f.Fd())) {
+			fmt.Fprintln(errs) // behind ^C and the progress bar
+		}
+		err = &failure{exitFault, errors.New("stopped: " + files.clear())}
+	}
+	if fault := results.fault(); fault != nil && ctx.Err() == nil {
+		err = &failure{exitFault, fmt.Errorf("what was asked for cannot be told (%w): send it elsewhere", cause(fault))}
 	}
 	if err == nil {
 		return exitMet
@@ -68,19 +81,38 @@ func run(args []string, in io.Reader, out, errs io.Writer) int {
 
 // told keeps the first error of writing, which fmt.Fprintf and its like would let go by.
 type told struct {
-	io.Writer
+	mu  sync.Mutex
+	w   io.Writer
 	err error
 }
 
 func (t *told) Write(p []byte) (int, error) {
-	n, err := t.Writer.Write(p)
+	t.mu.Lock()
+	defer t.mu.Unlock()
+	if t.w == nil {
+		return 0, os.ErrClosed
+	}
+	n, err := t.w.Write(p)
 	if err != nil && t.err == nil {
 		t.err = err
 	}
 	return n, err
 }
 
-func rootCommand() *cobra.Command {
+// close lets nothing more through.
+func (t *told) close() {
+	t.mu.Lock()
+	defer t.mu.Unlock()
+	t.w = nil
+}
+
+func (t *told) fault() error {
+	t.mu.Lock()
+	defer t.mu.Unlock()
+	return t.err
+}
+
+func rootCommand(files *shelf) *cobra.Command {
 	root := &cobra.Command{
 		Use:   "slowpoint",
 		Short: "Predict the slowest point of cooked and chilled food and judge your time-temperature limits",
@@ -90,6 +122,6 @@ It supports planning; it does not replace measurement. Your food authority decid
 		SilenceUsage: true, SilenceErrors: true,
 		CompletionOptions: cobra.CompletionOptions{HiddenDefaultCmd: true},
 	}
-	root.AddCommand(checkCommand(), readCommand(), blankCommand(), codesCommand(), foodsCommand(), verifyCommand(), versionCommand())
+	root.AddCommand(checkCommand(files), readCommand(), blankCommand(files), codesCommand(files), foodsCommand(), verifyCommand(), versionCommand())
 	return root
 }

@@ -212,8 +212,18 @@ func kitchen(t *testing.T, folder string, n int) {
 	}
 }
 
-// TestInterrupt presses Ctrl-C in the middle of a long plan: what is finished is whole, and nothing else is left.
+// TestInterrupt presses Ctrl-C before the first report of a long plan, or in the middle: it ends at once, what is finished is whole, and
+// nothing else is left.
 func TestInterrupt(t *testing.T) {
+	for _, c := range []struct {
+		name    string
+		reports int // that are finished when it is pressed
+	}{{"while the first products are calculated", 0}, {"in the middle", 3}} {
+		t.Run(c.name, func(t *testing.T) { interrupt(t, c.reports) })
+	}
+}
+
+func interrupt(t *testing.T, reports int) {
 	dir := t.TempDir()
 	kitchen(t, filepath.Join(dir, "plan"), 600)
 	out := filepath.Join(dir, "out")
@@ -227,12 +237,17 @@ func TestInterrupt(t *testing.T) {
 		list, _ := filepath.Glob(filepath.Join(out, "*.pdf"))
 		return list
 	}
-	for start := time.Now(); len(finished()) < 3; time.Sleep(5 * time.Millisecond) {
+	spools := func() []string {
+		list, _ := filepath.Glob(filepath.Join(out, ".slowpoint-*"))
+		return list
+	}
+	for start := time.Now(); len(finished()) < reports || len(spools()) < 3; time.Sleep(time.Millisecond) {
 		if time.Since(start) > time.Minute {
 			cmd.Process.Kill()
 			t.Fatalf("no reports after a minute: %s", &errs)
 		}
 	}
+	pressed := time.Now()
 	if err := cmd.Process.Signal(os.Interrupt); err != nil {
 		t.Fatal(err)
 	}
@@ -240,8 +255,14 @@ func TestInterrupt(t *testing.T) {
 	if err := cmd.Wait(); !errors.As(err, &e) || e.ExitCode() != exitFault {
 		t.Fatalf("ended with %v, want exit code %d\n%s%s", err, exitFault, &errs, &told)
 	}
-	if !strings.Contains(errs.String(), "stopped") || told.Len() > 0 {
-		t.Errorf("standard error: %s\nstandard output: %s", &errs, &told)
+	// A few milliseconds as a rule, for the temporary files that are removed; two seconds on a machine that does much else.
+	if took := time.Since(pressed); took > 2*time.Second {
+		t.Errorf("it went on for %v", took)
+	}
+	pdfs := finished()
+	said := fmt.Sprintf("stopped: %s of this run finished and whole in %s; not written: results.json, results.xlsx, report.txt, summary.pdf, ", count(len(pdfs), "file"), out)
+	if !strings.Contains(errs.String(), said) || told.Len() > 0 {
+		t.Errorf("standard error: %s\nstandard output: %s\nwant %s", &errs, &told, said)
 	}
 	list, err := os.ReadDir(out)
 	if err != nil {
@@ -252,8 +273,7 @@ func TestInterrupt(t *testing.T) {
 			t.Errorf("%s is left over", f.Name())
 		}
 	}
-	pdfs := finished()
-	if len(pdfs) < 3 || len(pdfs) >= 600 {
+	if len(pdfs) < reports || len(pdfs) >= 600 {
 		t.Errorf("%d reports: it was not stopped on the way", len(pdfs))
 	}
 	tool := poppler("pdfinfo", t.Fatalf)
@@ -309,6 +329,38 @@ func TestDemo(t *testing.T) {
 	}
 }
 
+// TestShelf clears the shelf while files are being written: no half file gets a name, none is left, and none begins afterwards.
+func TestShelf(t *testing.T) {
+	dir := t.TempDir()
+	s := &shelf{}
+	at := func(name string) string { return filepath.Join(dir, name) }
+	s.expect(at("whole"), at("half"))
+	words := func(text string) func(io.Writer) error {
+		return func(w io.Writer) error { _, err := io.WriteString(w, text); return err }
+	}
+	if err := s.writeWhole(at("whole"), words("all of it")); err != nil {
+		t.Fatal(err)
+	}
+	said := ""
+	if err := s.writeWhole(at("half"), func(w io.Writer) error {
+		err := words("some of it")(w)
+		said = s.clear()
+		return err
+	}); err == nil {
+		t.Error("a file that was cleared away was kept")
+	}
+	if err := s.writeWhole(at("late"), words("too late")); err == nil {
+		t.Error("a file was begun after the shelf was cleared")
+	}
+	list, err := os.ReadDir(dir)
+	if err != nil || len(list) != 1 || list[0].Name() != "whole" {
+		t.Errorf("left over: %v %v", list, err)
+	}
+	if want := "1 file of this run finished and whole in " + dir + "; not written: half"; said != want {
+		t.Errorf("%q, want %q", said, want)
+	}
+}
+
 func TestFileNames(t *testing.T) {
 	long := strings.Repeat("ż", 200)
 	for _, c := range []struct {
@@ -349,7 +401,7 @@ func TestBeside(t *testing.T) {
 func TestWriteWhole(t *testing.T) {
 	path := filepath.Join(t.TempDir(), "kept")
 	write := func(text string, err error) error {
-		return writeWhole(path, func(w io.Writer) error {
+		return new(shelf).writeWhole(path, func(w io.Writer) error {
 			if _, err := io.WriteString(w, text); err != nil {
 				return err
 			}
