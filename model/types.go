@@ -158,4 +158,5 @@ type Product struct {
 	Food   *Material
 	StartC float64
 	Points []Point // extra places; the centre is always known
+	Inches bool    // its sizes were typed in inches or feet: lengths in words stand in inches, with mm in brackets
 }

@@ -27,7 +27,7 @@ func (p *Product) Lies(at Place) string {
 	case Stirred:
 		return "anywhere: it is stirred"
 	case Cylinder, Sphere:
-		return round(p.Shape, math.Abs(up), z.DiameterM/2)
+		return p.round(math.Abs(up), z.DiameterM/2)
 	}
 	if at.near(Place{}) {
 		return "centre"
@@ -49,9 +49,9 @@ func (p *Product) Lies(at Place) string {
 	case half+up < sameM:
 		faces, height = append(faces, "underside"), ""
 	case half-up < 1e-3:
-		height = mm(half-up) + " under the top"
+		height = p.far(half-up) + " under the top"
 	case math.Abs(up) >= sameM:
-		height = mm(half+up) + " above the underside"
+		height = p.far(half+up) + " above the underside"
 	}
 	aside := ""
 	switch far := math.Abs(at.AcrossM); {
@@ -62,16 +62,16 @@ func (p *Product) Lies(at Place) string {
 	case p.Shape == ShortCylinder && far < sameM:
 		aside = "on the axis"
 	case p.Shape == ShortCylinder:
-		aside = mm(far) + " from the axis"
+		aside = p.far(far) + " from the axis"
 	case far >= sameM:
-		aside = mm(far) + " from the middle of the width"
+		aside = p.far(far) + " from the middle of the width"
 	}
 	lengthwise := ""
 	switch far := math.Abs(at.AlongM); {
 	case along-far < sameM:
 		faces = append(faces, "end")
 	case far >= sameM:
-		lengthwise = mm(far) + " from the middle of the length"
+		lengthwise = p.far(far) + " from the middle of the length"
 	}
 	switch len(faces) {
 	case 0:
@@ -100,9 +100,9 @@ func (p *Product) Lies(at Place) string {
 }
 
 // round is a place at r (m) in a long cylinder or a sphere of radius most.
-func round(s *Shape, r, most float64) string {
+func (p *Product) round(r, most float64) string {
 	middle, skin := "the centre", "surface"
-	if s == Cylinder {
+	if p.Shape == Cylinder {
 		middle, skin = "the axis", "curved surface"
 	}
 	switch {
@@ -111,13 +111,28 @@ func round(s *Shape, r, most float64) string {
 	case most-r < sameM:
 		return skin
 	case most-r < 1e-3:
-		return mm(most-r) + " under the surface"
+		return p.far(most-r) + " under the surface"
 	}
-	return mm(r) + " from " + middle
+	return p.far(r) + " from " + middle
 }
 
 // sameM is how near two places are one, m: no probe is placed better.
 const sameM = 5e-5
+
+// inchM is an inch, m (exact by definition; NIST SP 811 (2008), app. B.6).
+const inchM = 0.0254
+
+// far writes a distance (m) for a place: in mm, or in inches to a hundredth (a thousandth below 1 mm) with mm in brackets.
+func (p *Product) far(m float64) string {
+	if !p.Inches {
+		return mm(m)
+	}
+	parts := 100.0
+	if m < 1e-3 {
+		parts = 1000
+	}
+	return strconv.FormatFloat(math.Round(m/inchM*parts)/parts, 'f', -1, 64) + " in (" + mm(m) + ")"
+}
 
 // mm writes a length (m) in mm: whole ones from 1 mm on.
 func mm(m float64) string {

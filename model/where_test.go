@@ -49,3 +49,30 @@ func TestWhere(t *testing.T) {
 		})
 	}
 }
+
+// TestWhereInInches words places of a product that was typed in inches: an inch is 25.4 mm.
+func TestWhereInInches(t *testing.T) {
+	size := Size{ThicknessM: 0.0635, WidthM: 0.1, LengthM: 0.2, DiameterM: 0.12}
+	for _, x := range []struct {
+		name  string
+		shape *Shape
+		at    Place
+		want  string
+	}{
+		{"within a slab", Slab, Place{UpM: 0.0148}, "1.83 in (47 mm) above the underside"}, // 46.55 mm
+		{"just under the top", Slab, Place{UpM: 0.03135}, "0.016 in (0.4 mm) under the top"},
+		{"within a cylinder", Cylinder, Place{UpM: 0.021}, "0.83 in (21 mm) from the axis"},
+		{"just under a skin", Sphere, Place{UpM: 0.0595}, "0.02 in (0.5 mm) under the surface"},
+		{"short cylinder", ShortCylinder, Place{AcrossM: 0.021}, "0.83 in (21 mm) from the axis, half way up"},
+		{"bar", Bar, Place{AcrossM: 0.02}, "0.79 in (20 mm) from the middle of the width, half way up"},
+		{"brick", Brick, Place{AlongM: 0.03}, "half way up, 1.18 in (30 mm) from the middle of the length"},
+		{"a face has no number", Slab, Place{UpM: 0.03175}, "top surface"},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			p := Product{Shape: x.shape, Size: size, Inches: true}
+			if got := p.Lies(x.at); got != x.want {
+				t.Errorf("%q, want %q", got, x.want)
+			}
+		})
+	}
+}

@@ -12,6 +12,7 @@ import (
 	"gonum.org/v1/plot/vg/draw"
 
 	"slowpoint/model"
+	"slowpoint/model/unit"
 	"slowpoint/rules"
 )
 
@@ -720,8 +721,12 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 		return nil, nil
 	}
 	times := profileTimes(hist)
-	f := &chart{xName: name, yName: say("axis temperature", h.degree()), x0: 0, x1: (hi - lo) * 1000, size: size, ends: ends}
-	f.xTicks = marks(ticksTo(0, f.x1, []float64{0.5, 1, 2, 5, 10, 20, 25, 50, 100, 200}, 9))
+	in := unit.Length.Unit("mm")
+	if p.Product.Inches {
+		in = unit.Length.Unit("in")
+	}
+	f := &chart{xName: say(name, in.Name()), yName: say("axis temperature", h.degree()), x0: 0, x1: in.Out(hi - lo), size: size, ends: ends}
+	f.xTicks = marks(ticksTo(0, f.x1, []float64{0.1, 0.25, 0.5, 1, 2, 5, 10, 20, 25, 50, 100, 200}, 9))
 	f.y0, f.y1 = math.Inf(1), math.Inf(-1)
 	for _, t := range times {
 		l := line{name: say("profile at", duration(t, nearest))}
@@ -730,7 +735,7 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 			at := d.place
 			at.UpM = lo + (hi-lo)*float64(k)/n
 			v := h.shown(hist.At(at, t))
-			l.x, l.y = append(l.x, (at.UpM-lo)*1000), append(l.y, v)
+			l.x, l.y = append(l.x, in.Out(at.UpM-lo)), append(l.y, v)
 			f.y0, f.y1 = min(f.y0, v), max(f.y1, v)
 		}
 		f.lines = append(f.lines, l)
@@ -740,23 +745,23 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 	f.yTicks = ticksTo(f.y0, f.y1, []float64{1, 2, 5, 10, 20, 25, 50, 100}, 7)
 	for _, pt := range hist.Points {
 		if pt.Name != "centre" && pt.AcrossM == d.place.AcrossM && pt.AlongM == d.place.AlongM {
-			f.spots = append(f.spots, spot{pt.Name, (pt.UpM - lo) * 1000, h.shown(hist.At(pt.Place, times[len(times)-1]))})
+			f.spots = append(f.spots, spot{pt.Name, in.Out(pt.UpM - lo), h.shown(hist.At(pt.Place, times[len(times)-1]))})
 		}
 	}
 	return f, times
 }
 
-// depthAxis is the way through the product: along the thickness, the axis or the radius.
+// depthAxis is the way through the product: along the thickness, the axis or the radius; m, and the key of its words.
 func depthAxis(p *model.Product) (lo, hi float64, name string) {
 	switch p.Shape {
 	case model.Stirred, nil:
 		return 0, 0, ""
 	case model.Cylinder, model.Sphere:
-		return 0, p.Size.DiameterM / 2, say("axis radius")
+		return 0, p.Size.DiameterM / 2, "axis radius"
 	case model.ShortCylinder:
-		return -p.Size.LengthM / 2, p.Size.LengthM / 2, say("axis depth")
+		return -p.Size.LengthM / 2, p.Size.LengthM / 2, "axis depth"
 	}
-	return -p.Size.ThicknessM / 2, p.Size.ThicknessM / 2, say("axis depth")
+	return -p.Size.ThicknessM / 2, p.Size.ThicknessM / 2, "axis depth"
 }
 
 // profileTimes are three to six instants: the ends of steps, and the middles of the longest ones where there are too few.

@@ -6,6 +6,8 @@ import (
 	"strconv"
 	"strings"
 
+	"slowpoint/model"
+	"slowpoint/model/unit"
 	"slowpoint/rules"
 )
 
@@ -110,6 +112,22 @@ func duration(s float64, r rounding) string {
 
 // mm writes a length (m) in mm.
 func mm(m float64) string { return plain(m*1000, 1, nearest) + " mm" }
+
+// length writes a size (m) of a product in the unit that its sizes were typed in, inches with mm in brackets: "1.75 in (44.5 mm)".
+func length(p *model.Product, m float64) string {
+	if p.Inches {
+		return ownLength(p, m) + " (" + mm(m) + ")"
+	}
+	return mm(m)
+}
+
+// ownLength is length without the brackets.
+func ownLength(p *model.Product, m float64) string {
+	if p.Inches {
+		return plain(unit.Length.Unit("in").Out(m), 3, nearest) + " in"
+	}
+	return mm(m)
+}
 
 // needsMore tells whether a larger value is the better one for a finding; it decides which way a value is rounded.
 func needsMore(f *rules.Finding) bool {

@@ -128,6 +128,12 @@ func (d *doc) need(h float64) {
 
 // put writes one line of clean text with its baseline at y, black.
 func (d *doc) put(x, y float64, s string, size float64, bold bool) {
+	d.letters(size, bold, s)
+	d.pdf.Text(x, y, s)
+}
+
+// letters sets the font and the colour in which put writes s.
+func (d *doc) letters(size float64, bold bool, s string) {
 	fam, style := family, ""
 	if bold {
 		style = "B"
@@ -148,7 +154,6 @@ func (d *doc) put(x, y float64, s string, size float64, bold bool) {
 		d.pdf.SetTextColor(0, 0, 0)
 		d.letter = f
 	}
-	d.pdf.Text(x, y, s)
 }
 
 // height of a line of a size, mm.

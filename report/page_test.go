@@ -1,7 +1,9 @@
 package report
 
 import (
+	"bytes"
 	"math"
+	"regexp"
 	"slices"
 	"strings"
 	"testing"
@@ -183,5 +185,70 @@ func TestWorstFirst(t *testing.T) {
 	}
 	if want := []float64{-3, -1, 0.1, 0.4, 5, -8, -9}; !slices.Equal(got, want) {
 		t.Errorf("%v, want %v", got, want)
+	}
+}
+
+// A product that was typed in inches is shown in inches with mm in brackets: an inch is 25.4 mm.
+func TestLengthsInInches(t *testing.T) {
+	metric := &model.Product{}
+	us := &model.Product{Inches: true}
+	for _, c := range []struct{ name, got, want string }{
+		{"mm", length(metric, 0.04445), "44.5 mm"},
+		{"inches", length(us, 0.04445), "1.75 in (44.5 mm)"},
+		{"alone", ownLength(us, 0.04445), "1.75 in"},
+		{"mm alone", ownLength(metric, 0.04445), "44.5 mm"},
+		{"a line with room", (&section{p: us}).sizeWords("thickness", 0.04445, 60), "thickness 1.75 in (44.5 mm)"},
+		{"a short line", (&section{p: us}).sizeWords("thickness", 0.04445, 40), "1.75 in (44.5 mm)"},
+		{"a very short line", (&section{p: us}).sizeWords("thickness", 0.04445, 15), "1.75 in"},
+	} {
+		if c.got != c.want {
+			t.Errorf("%s: %q, want %q", c.name, c.got, c.want)
+		}
+	}
+	h, p := roastHead(), roast(t, model.Brick, rules.NotMet)
+	p.Product.Inches, p.Product.Size.ThicknessM = true, 0.05715
+	for _, doc := range []struct{ name, text string }{{"PDF", pdfText(t, productPDF(t, h, p))}, {"text", writeText(t, h, p)}} {
+		for _, w := range []string{"thickness 2.25 in (57.2 mm)", "length 7.874 in (200 mm)"} {
+			if !strings.Contains(doc.text, w) {
+				t.Errorf("%s: %q is missing", doc.name, w)
+			}
+		}
+	}
+	f, _ := h.profile(p, p.decides(), small, 84)
+	if f.xName != "height above the underside, in" || math.Abs(f.x1-2.25) > 1e-9 || math.Abs(f.lines[0].x[48]-2.25) > 1e-9 || math.Abs(f.spots[0].x-(2.25/2+0.01/0.0254)) > 1e-9 {
+		t.Errorf("profile: %q up to %g, line to %g, probe at %g", f.xName, f.x1, f.lines[0].x[48], f.spots[0].x)
+	}
+}
+
+// What is written upright in a sketch changes no font of what follows: the library restores the font of before the turn.
+func TestFontAfterUprightWords(t *testing.T) {
+	var fonts []string
+	d := newDoc(roastHead(), "T")
+	d.pdf.SetCompression(false)
+	d.page()
+	d.put(20, 20, "A heading", 12.5, true)
+	s := section{d: d, p: &model.Product{}}
+	s.measure(20, 30, 20, 60, "upright")
+	s.measure(20, 70, 60, 70, "level")
+	var b bytes.Buffer
+	if err := d.pdf.Output(&b); err != nil {
+		t.Fatal(err)
+	}
+	var saved []string
+	now := ""
+	for _, m := range regexp.MustCompile(`(?m)^q$|^Q$|/F\S+ [\d.]+ Tf|Tj ET`).FindAllString(b.String(), -1) {
+		switch {
+		case m == "q":
+			saved = append(saved, now)
+		case m == "Q":
+			now, saved = saved[len(saved)-1], saved[:len(saved)-1]
+		case m == "Tj ET":
+			fonts = append(fonts, now)
+		default:
+			now = m
+		}
+	}
+	if len(fonts) != 3 || fonts[1] != fonts[2] || fonts[0] == fonts[1] {
+		t.Errorf("the fonts of heading, upright and level words: %q", fonts)
 	}
 }

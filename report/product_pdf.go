@@ -906,13 +906,13 @@ func (x *sheet) sizes() string {
 	for _, need := range p.Needs {
 		switch need {
 		case "Thickness":
-			s = append(s, say("size thickness")+" "+mm(z.ThicknessM))
+			s = append(s, say("size thickness")+" "+length(&x.p.Product, z.ThicknessM))
 		case "Width":
-			s = append(s, say("size width")+" "+mm(z.WidthM))
+			s = append(s, say("size width")+" "+length(&x.p.Product, z.WidthM))
 		case "Length":
-			s = append(s, say("size length")+" "+mm(z.LengthM))
+			s = append(s, say("size length")+" "+length(&x.p.Product, z.LengthM))
 		case "Diameter":
-			s = append(s, say("size diameter")+" "+mm(z.DiameterM))
+			s = append(s, say("size diameter")+" "+length(&x.p.Product, z.DiameterM))
 		case "Volume":
 			s = append(s, say("size volume", plain(z.VolumeM3*1000, 3, nearest)))
 		case "Surface area":

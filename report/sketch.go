@@ -110,6 +110,7 @@ func (s *section) measure(x, y, x2, y2 float64, words string) {
 	if x == x2 {
 		s.line(x-1.2, y, x+1.2, y)
 		s.line(x-1.2, y2, x+1.2, y2)
+		s.d.letters(small, false, words) // before the turn: at its end the page has again what it had before
 		s.d.pdf.TransformBegin()
 		s.d.pdf.TransformRotate(90, x-1.2, (y+y2)/2+w/2)
 		s.d.put(x-1.2, (y+y2)/2+w/2, words, small, false)
@@ -144,7 +145,7 @@ func (s *section) slab() {
 	s.d.put(x+2, y-1.5, model.Top.Name, small, false)
 	s.d.put(x+2, y+h+4, model.Underside.Name, small, false)
 	t := s.p.Size.ThicknessM
-	s.measure(x-6, y, x-6, y+h, say("size thickness")+" "+mm(t))
+	s.measure(x-6, y, x-6, y+h, s.sizeWords(say("size thickness"), t, h))
 	to := func(pl model.Place) (float64, float64) { return x + w/2, y + h/2 - pl.UpM/t*h }
 	s.marks(to, x+w, true)
 }
@@ -157,14 +158,14 @@ func (s *section) round() {
 	p.SetDrawColor(0, 0, 0)
 	p.SetLineWidth(1.5 * mmPerPt)
 	p.Circle(cx, cy, r, "D")
-	s.measure(cx-r, cy+r+3, cx+r, cy+r+3, say("size diameter")+" "+mm(s.p.Size.DiameterM))
+	s.measure(cx-r, cy+r+3, cx+r, cy+r+3, s.sizeWords(say("size diameter"), s.p.Size.DiameterM, 2*r+16))
 	scale := r / (s.p.Size.DiameterM / 2)
 	s.marks(func(q model.Place) (float64, float64) { return cx + q.UpM*scale, cy }, cx+r+4, true)
 }
 
 // box is a rectangular section, or the section along the axis of a short cylinder; wide and tall in m.
 func (s *section) box(wide, tall float64, across func(model.Place) float64, caption, wideName, tallName string, words bool) {
-	roomW, roomH := 60.0, s.h-14
+	roomW, roomH := 60.0, s.h-16
 	if caption != "" {
 		roomW = 46
 	}
@@ -174,22 +175,24 @@ func (s *section) box(wide, tall float64, across func(model.Place) float64, capt
 		w, h = max(w, 8), max(h, 8)
 		caption += say("not to scale")
 	}
-	x, y := s.x+14, s.y+5
+	x, y := s.x+14, s.y+7
 	s.outline(x, y, w, h)
 	if caption != "" {
-		s.d.put(x, y-1.5, caption, small, false)
+		s.d.put(x, y-3.4, caption, small, false) // above the mark of a place at the top
 	}
-	s.measure(x-4, y, x-4, y+h, sizeWords(tallName, tall, h))
-	s.measure(x, y+h+3, x+w, y+h+3, sizeWords(wideName, wide, w))
+	s.measure(x-4, y, x-4, y+h, s.sizeWords(tallName, tall, h))
+	s.measure(x, y+h+3, x+w, y+h+3, s.sizeWords(wideName, wide, w))
 	s.marks(func(q model.Place) (float64, float64) { return x + w/2 + across(q)/wide*w, y + h/2 - q.UpM/tall*h }, x+w, words)
 }
 
-// sizeWords leaves the name away where the line is too short for it.
-func sizeWords(name string, m, room float64) string {
-	if s := name + " " + mm(m); widthMM(s, small, false) < room {
-		return s
+// sizeWords leaves the name away where the line is too short for it, and then the second unit, which the sentence below has.
+func (s *section) sizeWords(name string, m, room float64) string {
+	for _, words := range []string{name + " " + length(s.p, m), length(s.p, m)} {
+		if widthMM(words, small, false) < room {
+			return words
+		}
 	}
-	return mm(m)
+	return ownLength(s.p, m)
 }
 
 // pot is a vessel whose whole content has one temperature.

@@ -87,7 +87,7 @@ func (p *product) size(l *line) {
 				used = used || n == z.heading
 			}
 		}
-		switch v := (*float64)(nil); {
+		switch {
 		case !used && l.filled(z.heading):
 			needs := and(p.Shape.Needs)
 			if needs == "" {
@@ -97,11 +97,17 @@ func (p *product) size(l *line) {
 		case used && p.Shape != nil && !l.filled(z.heading):
 			l.fault(z.heading, "", sizeMissing, z.heading, p.Shape.Name, and(p.Shape.Needs))
 		case used:
-			if v = l.number(z.heading); v != nil {
-				*z.field(&p.Size) = *v
+			if v := l.value(z.heading); v != nil {
+				*z.field(&p.Size) = v.Computed
+				p.Inches = p.Inches || inches(v.Typed)
 			}
 		}
 	}
+}
+
+// inches tells whether a typed length is in inches or feet.
+func inches(typed string) bool {
+	return strings.HasSuffix(typed, " in") || strings.HasSuffix(typed, " ft")
 }
 
 // productFood finds the food of a product.

@@ -131,6 +131,7 @@ func TestUnits(t *testing.T) {
 	stew := read("").Products[0]
 	for _, c := range []struct{ name, change string }{
 		{"inches in the heading", "set Products!E1 = Thickness (in)\nset Products!E2 = 1.5748031496062992\nset Products!E4 = 2"},
+		{"inches in the cell", "set Products!E2 = '1.5748031496062992\""},
 		{"centimetres in the cell", "set Products!E2 = '4 cm"},
 		{"Fahrenheit", "set Products!J1 = Start temperature (°F)\nset Products!J2 = 41\nset Products!J3 = 41\nset Products!J4 = 40"},
 		{"hours in the heading", "set Steps!E1 = Duration (h)\nset Steps!E2 = 1.5\nset Steps!E3 = '20 min\nset Steps!E4 = 5\nset Steps!E5 = 1"},
@@ -149,6 +150,9 @@ func TestUnits(t *testing.T) {
 			got := read(c.change).Products[0]
 			if math.Abs(got.Size.ThicknessM-stew.Size.ThicknessM) > 1e-15 || math.Abs(got.StartC-stew.StartC) > 1e-12 {
 				t.Errorf("%v, %g °C; want %v, %g °C", got.Size, got.StartC, stew.Size, stew.StartC)
+			}
+			if want := strings.Contains(c.name, "inch"); got.Inches != want {
+				t.Errorf("to be shown in inches: %v, want %v", got.Inches, want)
 			}
 			for i := range stew.Steps {
 				a, b := got.Steps[i], stew.Steps[i]
