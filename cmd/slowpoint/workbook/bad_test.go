@@ -42,6 +42,7 @@ type page struct {
 	hideR []int
 	hideC []string
 	merge []string
+	lined []string // struck through: A3, or 3 for a row
 }
 
 func (p *page) set(row, col int, v string) {
@@ -138,6 +139,13 @@ func (r *recipe) follow(t *testing.T, text string) {
 			} else {
 				r.hiddenSheets[rest] = true
 			}
+		case "strike":
+			r.onlyXlsx = true
+			sheet, at, ok := strings.Cut(rest, "!")
+			if m := ofRow.FindStringSubmatch(rest); !ok && m != nil {
+				sheet, at = m[1], m[2]
+			}
+			r.page(sheet).lined = append(r.page(sheet).lined, at)
 		case "merge":
 			r.onlyXlsx = true
 			sheet, ref, _ := strings.Cut(rest, "!")
@@ -214,6 +222,15 @@ func (r *recipe) workbook(t testing.TB, file string) {
 				name, _ := excelize.CoordinatesToCellName(col, row)
 				ok(setCell(f, p.name, name, p.cells[row][col]))
 			}
+		}
+		for _, at := range p.lined {
+			from, to := at, at
+			if _, err := strconv.Atoi(at); err == nil {
+				from, to = "A"+at, "AN"+at
+			}
+			style, err := f.NewStyle(&excelize.Style{Font: &excelize.Font{Strike: true}})
+			ok(err)
+			ok(f.SetCellStyle(p.name, from, to, style))
 		}
 		for _, n := range p.hideR {
 			ok(f.SetRowVisible(p.name, n, false))

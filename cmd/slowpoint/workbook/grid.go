@@ -59,6 +59,7 @@ type entry struct {
 	kind    kind
 	form    form
 	formula bool
+	struck  bool // struck through, wholly or in part
 }
 
 var nothing entry

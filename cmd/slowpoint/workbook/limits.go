@@ -84,7 +84,7 @@ type timeTable struct {
 	rules.Table
 	because  cell.Errors
 	readings []echoes
-	hidden   bool // one of its rows
+	aside    bool // one of its rows
 }
 
 // group is a row of Groups.
@@ -154,7 +154,7 @@ func (ls *limits) readTables() {
 			tt.Rows = append(tt.Rows, rules.Row{At: l.ref(), C: at.Computed, S: time.Computed, Typed: at.Typed + ", " + time.Typed})
 		}
 		reasons(&tt.because, l.because)
-		tt.hidden = tt.hidden || l.row.hidden
+		tt.aside = tt.aside || l.aside
 		tt.readings = append(tt.readings, l.readings...)
 	}
 }
@@ -240,7 +240,7 @@ func (ls *limits) read(l *line) {
 	}
 	choices(l, &lim)
 	words := ls.citation(l, &lim)
-	hidden := l.row.hidden
+	aside := l.aside
 	if name := l.words("Table"); name != "" {
 		if tt := ls.tables[key(name)]; tt == nil && len(ls.unread["Tables"]) > 0 {
 			l.suffer(ls.unread["Tables"])
@@ -249,13 +249,13 @@ func (ls *limits) read(l *line) {
 		} else {
 			lim.Table = &tt.Table
 			l.suffer(tt.because)
-			hidden = hidden || tt.hidden
+			aside = aside || tt.aside
 			sc.give("table "+key(name), tt.readings)
 		}
 	}
 	for g, n := ls.groups[key(lim.Group)], 0; lim.Group != "" && g != nil && n <= mostDeep; g, n = ls.groups[key(g.Within)], n+1 {
 		l.suffer(g.line.because)
-		hidden = hidden || g.line.row.hidden
+		aside = aside || g.line.aside
 		sc.give("group "+key(g.Name), g.line.readings)
 	}
 	if lim.Group != "" && ls.groups[key(lim.Group)] == nil {
@@ -288,7 +288,7 @@ func (ls *limits) read(l *line) {
 	}
 	ls.plan.Limits = append(ls.plan.Limits, lim)
 	sc.give("", l.readings)
-	if hidden {
+	if aside {
 		for _, p := range sc.products {
 			p.suffer(l.because)
 		}

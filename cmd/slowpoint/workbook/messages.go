@@ -28,6 +28,7 @@ var (
 	headingNoDiff = saying{"is headed as a temperature, but it is a temperature difference", "write {1} (°C difference) or {1} (°F difference)"}
 	noHeading     = saying{"stands in a column without a heading", "give column {1} a heading, one that starts with # if it is your own, or clear the cell{2}"}
 	twoTables     = saying{"The sheet holds two tables, {1} and {2}", "keep one table on a sheet"}
+	struckHeading = saying{"is a heading that is struck through", "take the line away if the column counts, put a # in front of it, or delete the column"}
 	hiddenColumn  = saying{"Column {1} is hidden, and its values are used", "unhide it so that everybody sees what is calculated"}
 	tooManyRows   = saying{"The sheet has more than {1} rows", "divide the plan into several"}
 	csvUnreadable = saying{"The file cannot be read as CSV: {1}", "{2}"}
@@ -37,6 +38,7 @@ var (
 	keyMissing     = saying{"stands in a row without {1} and belongs to nothing", "fill the row, clear it, or put a # in front of the heading if the column is your own"}
 	missing        = saying{"{1} is missing", "{2}"}
 	hiddenRow      = saying{"The row is hidden", "unhide it or delete it; a hidden row is never used and never skipped in silence"}
+	struckCell     = saying{"is struck through, or a part of it is", "take the line away if the row counts, or delete the row; what is struck through is never used and never skipped in silence"}
 	mergedCells    = saying{"The cells {1} are merged", "unmerge them and fill each cell"}
 	notAChoice     = saying{"is not a word of the column {1}{2}", "choose from: {3}"}
 	notAnAnswer    = saying{"is not an answer to the item {1}", "choose from: {2}"}

@@ -38,6 +38,7 @@ type line struct {
 	row      *gridRow
 	because  cell.Errors // the faults that it has, or that it suffers from
 	readings []echoes
+	aside    bool    // hidden or struck through: somebody may have meant it away
 	merged   []block // merged cells that the row has a part of
 }
 
@@ -224,6 +225,9 @@ func (r *reader) headings(t *table, top *gridRow) (own map[int]bool) {
 				h.faults.Add(*fault)
 			}
 		}
+		if e.struck {
+			h.faults.Add(struckHeading.problem(at, cell.Fault, "", e.text))
+		}
 		for _, f := range h.faults {
 			r.add(f)
 		}
@@ -284,7 +288,7 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 	for i := from; i < end; i++ {
 		row := &g.rows[i]
 		l := &line{r: r, t: t, row: row}
-		filled := false
+		filled, struck := false, -1
 		for j := range row.cells {
 			col := int(row.cells[j].col)
 			switch h := ofHead[col]; {
@@ -304,6 +308,9 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 				told[col] = true
 				l.because.Add(e)
 			}
+			if row.cells[j].struck && struck < 0 {
+				struck = j
+			}
 			filled = true
 		}
 		if !filled {
@@ -320,7 +327,14 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 		}
 		l.suffer(all)
 		if row.hidden {
+			l.aside = true
 			l.fault("", "", hiddenRow)
+		}
+		if struck >= 0 {
+			l.aside = true
+			e := struckCell.problem(t.ref(row.n, int(row.cells[struck].col)), cell.Fault, "", row.cells[struck].text)
+			r.add(e)
+			l.because.Add(e)
 		}
 		t.lines = append(t.lines, l)
 	}

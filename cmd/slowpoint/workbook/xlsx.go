@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"archive/zip"
+	"bytes"
 	"encoding/xml"
 	"errors"
 	"fmt"
@@ -22,6 +23,13 @@ type book struct {
 	is1904  bool
 	strings []string
 	forms   []form // of each cell style
+	struck  struck
+}
+
+// struck is what is struck through; both are nil in a plan without such a thing.
+type struck struct {
+	texts  map[int]bool // shared texts
+	styles map[int]bool // cell styles
 }
 
 type bookSheet struct {
@@ -193,32 +201,55 @@ func (b *book) readStrings(r io.Reader) error {
 		if e.Name.Local != "si" {
 			return nil
 		}
-		s, err := richText(d)
+		s, struck, err := richText(d)
 		if err != nil {
 			return err
+		}
+		if struck {
+			b.struck.texts = marked(b.struck.texts, len(b.strings))
 		}
 		b.strings = append(b.strings, tidy(s))
 		return nil
 	}, nil)
 }
 
-// richText reads up to the end of the element that was just opened and joins its texts.
-func richText(d *xml.Decoder) (string, error) {
+// marked adds a number to a set, which is made when it is first needed.
+func marked(set map[int]bool, n int) map[int]bool {
+	if set == nil {
+		set = map[int]bool{}
+	}
+	set[n] = true
+	return set
+}
+
+// strikes tells whether an element of a font strikes its text through.
+func strikes(e xml.StartElement) bool {
+	if e.Name.Local != "strike" {
+		return false
+	}
+	v := attr(e, "val")
+	return v != "0" && v != "false"
+}
+
+// richText reads up to the end of the element that was just opened, joins its texts, and tells whether one of them is struck through.
+func richText(d *xml.Decoder) (joined string, struck bool, err error) {
 	var s strings.Builder
+	lined := false // the run that is read
 	for depth, inT := 1, false; depth > 0; {
 		t, err := d.Token()
 		if err != nil {
-			return "", midway(err)
+			return "", false, midway(err)
 		}
 		switch t := t.(type) {
 		case xml.StartElement:
 			if t.Name.Local == "rPh" {
 				if err := d.Skip(); err != nil {
-					return "", midway(err)
+					return "", false, midway(err)
 				}
 				continue
 			}
 			depth++
+			lined = (lined || strikes(t)) && t.Name.Local != "r"
 			inT = t.Name.Local == "t"
 		case xml.EndElement:
 			depth--
@@ -226,10 +257,11 @@ func richText(d *xml.Decoder) (string, error) {
 		case xml.CharData:
 			if inT {
 				s.Write(t)
+				struck = struck || lined && len(bytes.TrimSpace(t)) > 0
 			}
 		}
 	}
-	return unescape(s.String()), nil
+	return unescape(s.String()), struck, nil
 }
 
 func midway(err error) error {
@@ -258,18 +290,31 @@ func unescape(s string) string {
 	}
 }
 
-// readStyles finds what the number format of each cell style makes of a number.
+// readStyles finds what the number format of each cell style makes of a number, and which styles strike through.
 func (b *book) readStyles(r io.Reader) error {
 	custom := map[string]form{}
-	inCells := false
+	var lined map[int]bool // fonts that strike through
+	fonts := 0             // begun so far
+	inFonts, inCells := false, false
 	return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
 		switch e.Name.Local {
 		case "numFmt":
 			custom[attr(e, "numFmtId")] = formOf(attr(e, "formatCode"))
+		case "fonts":
+			inFonts = true
+		case "font":
+			fonts++
+		case "strike":
+			if inFonts && strikes(e) {
+				lined = marked(lined, fonts-1)
+			}
 		case "cellXfs":
 			inCells = true
 		case "xf":
 			if inCells {
+				if font, err := strconv.Atoi(attr(e, "fontId")); err == nil && lined[font] {
+					b.struck.styles = marked(b.struck.styles, len(b.forms))
+				}
 				id := attr(e, "numFmtId")
 				f, ok := custom[id]
 				if !ok {
@@ -280,7 +325,10 @@ func (b *book) readStyles(r io.Reader) error {
 		}
 		return nil
 	}, func(name string) {
-		if name == "cellXfs" {
+		switch name {
+		case "fonts":
+			inFonts = false
+		case "cellXfs":
 			inCells = false
 		}
 	})
@@ -486,8 +534,8 @@ func parseBlock(ref string) (block, bool) {
 
 // stored is what the XML of a cell holds.
 type stored struct {
-	kind, value, inline string
-	formula, hasV       bool
+	kind, value, inline   string
+	formula, hasV, struck bool
 }
 
 // cell reads one cell up to its end.
@@ -505,7 +553,7 @@ func (b *book) cell(d *xml.Decoder, e xml.StartElement) (entry, error) {
 				in.formula = true
 				err = d.Skip()
 			case "is":
-				in.inline, err = richText(d)
+				in.inline, in.struck, err = richText(d)
 			case "v":
 				in.value, err = charData(d)
 				in.hasV = true
@@ -531,7 +579,11 @@ func (b *book) cell(d *xml.Decoder, e xml.StartElement) (entry, error) {
 
 // meaning makes an entry of what a cell holds; style is the number of its cell style.
 func (b *book) meaning(in stored, style string) (entry, error) {
-	c := entry{formula: in.formula}
+	c := entry{formula: in.formula, struck: in.struck}
+	if b.struck.styles != nil {
+		n, err := strconv.Atoi(style)
+		c.struck = c.struck || err == nil && b.struck.styles[n]
+	}
 	switch {
 	case in.kind == "s" && in.value != "":
 		n, err := strconv.Atoi(strings.TrimSpace(in.value))
@@ -539,6 +591,7 @@ func (b *book) meaning(in stored, style string) (entry, error) {
 			return c, fmt.Errorf("points at text %s of %d shared texts", in.value, len(b.strings))
 		}
 		c.kind, c.text = text, b.strings[n]
+		c.struck = c.struck || b.struck.texts[n]
 	case in.kind == "inlineStr":
 		c.kind, c.text = text, tidy(in.inline)
 	case in.formula && (!in.hasV || in.value == "" && in.kind != "str"): // of text, <v></v> is the stored result "", a missing <v> is none
