@@ -114,6 +114,13 @@ func (c *checker) food() {
 		}
 		return flow.Name
 	}
+	says, instead := "", "use the shape stirred if it is stirred all the time, or judge a probe record"
+	if field == "Flows" { // what was typed stands in front, and a food's own name with a built-in one
+		says = "says that " + f.Name + " "
+	}
+	if f.SetForm != "" {
+		instead = "once it is set, the built-in food is " + f.SetForm + "; else " + instead
+	}
 	if f.Table {
 		c.add(f.At, "At temperature", "", fmt.Sprintf("%s has properties at several temperatures, which cannot be calculated yet", f.Name),
 			"keep one row, at the middle of the temperatures that matter, on the slow side")
@@ -123,11 +130,9 @@ func (c *checker) food() {
 	}
 	switch f.Flow {
 	case FlowsYes:
-		c.add(at, field, typed(f.Flow), fmt.Sprintf("%s mixes by itself when left still; conduction does not describe that", f.Name),
-			"use the shape stirred if it is stirred all the time, or judge a probe record")
+		c.add(at, field, typed(f.Flow), says+"mixes by itself when left still; conduction does not describe that", instead)
 	case FlowsThick:
-		c.add(at, field, typed(f.Flow), fmt.Sprintf("%s may mix by itself while it is hot; conduction alone does not describe that", f.Name),
-			"use the shape stirred if it is stirred all the time, or judge a probe record")
+		c.add(at, field, typed(f.Flow), says+"may mix by itself while it is hot; conduction alone does not describe that", instead)
 	}
 	if f.FreezingC != nil && p.StartC < *f.FreezingC || f.FreezingC == nil && p.StartC < unfrozenC {
 		c.add(p.At, "Start temperature", fmt.Sprintf("%g °C", p.StartC), "the food starts frozen, and melting cannot be calculated yet",

@@ -11,6 +11,8 @@ import (
 	"testing"
 
 	"pgregory.net/rapid"
+
+	"slowpoint/model"
 )
 
 // published reads testdata/published/NAME: heading and rows as maps.
@@ -264,6 +266,17 @@ func TestNamed(t *testing.T) {
 	for _, f := range []string{"Milk, whole", "Egg, whole, raw", "Frankfurter, beef, unheated"} { // their freezing points are known from memory only
 		if m, ok := Named(f); !ok || m.FreezingC != nil {
 			t.Errorf("%s must come without a freezing point", f)
+		}
+	}
+}
+
+// TestSetForms: a food that flows is answered with a listed one that does not.
+func TestSetForms(t *testing.T) {
+	for from, to := range setForms {
+		raw, ok := Named(from)
+		set, is := Named(to)
+		if !ok || !is || raw.Flow == model.FlowsNo || set.Flow != model.FlowsNo || raw.SetForm != set.Name || set.SetForm != "" {
+			t.Errorf("%s -> %s", from, to)
 		}
 	}
 }

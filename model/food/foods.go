@@ -27,6 +27,13 @@ var foodsCSV string
 // Foods are the built-in foods, group by group.
 var Foods = readFoods(foodsCSV)
 
+// setForms are the foods that raw ones become when heat has set them.
+var setForms = map[string]string{
+	"Egg, whole, raw": "Egg, whole, hard-boiled",
+	"Egg white, raw":  "Egg, whole, hard-boiled",
+	"Egg yolk, raw":   "Egg, whole, hard-boiled",
+}
+
 // readFoods reads the embedded table. A fault in it is a bug of ours, so it panics; the tests read it first.
 func readFoods(text string) []Food {
 	r := csv.NewReader(strings.NewReader(text))
@@ -67,7 +74,7 @@ func (f Food) Material() model.Material {
 	if err != nil {
 		panic(err) // our own table; a test composes every row
 	}
-	m.Flow = f.Flow
+	m.Flow, m.SetForm = f.Flow, setForms[f.Name]
 	if f.FreezingC != nil {
 		t := *f.FreezingC
 		m.FreezingC = &t
