@@ -89,15 +89,18 @@ var (
 	airWithMeasured = saying{"is given beside measured properties, which already hold the air", "clear the cell"}
 
 	// steps, faces, courses
-	stepUnknown    = saying{"is not a step of the process {1}{2}", "correct the name"}
-	tooManySteps   = saying{"has more than {1} steps", "divide the process"}
-	stepTwice      = saying{"is there twice in the process {1}; the first is in row {2}", "give each step of a process a name of its own"}
-	noMedium       = saying{"Temperature is missing: {1} needs a Temperature or a Course", "fill one of the two"}
-	bothMedia      = saying{"is given beside the temperature {1}", "keep Temperature or Course, not both"}
-	mediumUnused   = saying{"is given, but {1} has no temperature", "clear the cell"}
-	columnUnused   = saying{"is given, but {1} does not use {2}", "clear the cell or choose other surroundings"}
-	columnNeeded   = saying{"{1} is missing: {2} needs it", "{3}"}
-	looseLid       = saying{"Wrap resistance is missing: loose lid needs it", "measure the air gap under the lid: it is about 0.04 m²K/W a millimetre"}
+	stepUnknown  = saying{"is not a step of the process {1}{2}", "correct the name"}
+	tooManySteps = saying{"has more than {1} steps", "divide the process"}
+	stepTwice    = saying{"is there twice in the process {1}; the first is in row {2}", "give each step of a process a name of its own"}
+	noMedium     = saying{"Temperature is missing: {1} needs a Temperature or a Course", "fill one of the two"}
+	bothMedia    = saying{"is given beside the temperature {1}", "keep Temperature or Course, not both"}
+	mediumUnused = saying{"is given, but {1} has no temperature", "clear the cell"}
+	columnUnused = saying{"is given, but {1} does not use {2}", "clear the cell or choose other surroundings"}
+	columnNeeded = saying{"{1} is missing: {2} needs it", "{3}"}
+	looseLid     = saying{"Wrap resistance is missing: loose lid needs it", "measure the air gap under the lid: it is about 0.04 m²K/W a millimetre"}
+	// The plastic of the example, 0.2 W/(m·K), is from memory.
+	bareWrap = saying{"Wrap resistance is missing: the tight wrap is taken without a resistance of its own, so that heating and chilling both come out a little too fast, which is not the safe side",
+		"type its thickness over its conductivity, 0.00025 m²K/W for 0.05 mm of a plastic of 0.2 W/(m·K), or a film coefficient that includes it; a wrap with air beneath it is no tight one: take loose lid, about 0.04 m²K/W a millimetre of air"}
 	openWithWrap   = saying{"is given, but the cover is open", "clear the cell, or name the cover"}
 	courseUnknown  = saying{"is not a course of the sheet Courses{1}", "correct the name"}
 	courseShort    = saying{"is a course of {1}, shorter than the step of {2}", "add rows to the course up to the end of the step"}
