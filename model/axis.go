@@ -11,14 +11,16 @@ import (
 type axisKind int
 
 const (
-	lumped     axisKind = iota // no extent: well mixed, or a direction that the shape does not have
-	planeHalf                  // 0 (mid-plane, symmetric) … 1 (face)
-	planeFull                  // -1 (lower face) … 1 (upper face)
-	radial                     // cylinder: 0 (axis) … 1 (face)
-	spherical                  // sphere: 0 (centre) … 1 (face)
-	axisKinds  = iota
-	maxDegrees = 48 // most functions on one axis
+	lumped    axisKind = iota // no extent: well mixed, or a direction that the shape does not have
+	planeHalf                 // 0 (mid-plane, symmetric) … 1 (face)
+	planeFull                 // -1 (lower face) … 1 (upper face)
+	radial                    // cylinder: 0 (axis) … 1 (face)
+	spherical                 // sphere: 0 (centre) … 1 (face)
+	axisKinds                 // how many there are
 )
+
+// maxDegrees is how many functions there may be on one axis.
+const maxDegrees = 48
 
 // base holds what depends on the kind of an axis and the number n of polynomials only. The polynomials are orthonormal in the
 // axis' own volume measure, scaled to a volume of 1, and the first of them is 1:
@@ -37,6 +39,14 @@ type base struct {
 	u    []float64 // n×n, u[m*n+i]: polynomial m in function i
 	top  []float64 // n, function i at the upper face (1)
 	low  []float64 // n, function i at the lower face (-1); planeFull only
+
+	sites [4][2]*sites // by the number of axes with extent; every other node only in the second
+}
+
+// sites are the nodes of an axis.
+type sites struct {
+	x   []float64 // rising
+	phi []float64 // phi[g*n+m]: polynomial m at node g
 }
 
 var (
@@ -54,6 +64,25 @@ func baseOf(kind axisKind, n int) *base {
 	b := newBase(kind, n)
 	bases[kind][n] = b
 	return b
+}
+
+// sitesFor gives the nodes of the base on one of used axes; every other node only, if coarse.
+func (b *base) sitesFor(used int, coarse bool) *sites {
+	i := 0
+	if coarse {
+		i = 1
+	}
+	basesMu.Lock()
+	defer basesMu.Unlock()
+	if b.sites[used][i] == nil {
+		s := &sites{x: nodesOf(b.kind, used, b.n, coarse)}
+		s.phi = make([]float64, b.n*len(s.x))
+		for g, x := range s.x {
+			b.values(x, s.phi[g*b.n:(g+1)*b.n], nil)
+		}
+		b.sites[used][i] = s
+	}
+	return b.sites[used][i]
 }
 
 func newBase(kind axisKind, n int) *base {
@@ -120,98 +149,75 @@ func newBase(kind axisKind, n int) *base {
 
 // values fills phi (n) with the polynomials at x and, unless nil, dphi with their slopes.
 func (b *base) values(x float64, phi, dphi []float64) {
-	n := b.n
-	switch b.kind {
-	case lumped:
-		phi[0] = 1
-		if dphi != nil {
-			dphi[0] = 0
+	t, dt := b.inner(x)
+	r := recurrences[b.kind][:len(phi)]
+	p0, p1, d0, d1 := 0.0, 1.0, 0.0, 0.0
+	if dphi == nil {
+		for j := range r {
+			phi[j] = p1
+			p0, p1 = p1, (r[j].a*t+r[j].b)*p1-r[j].c*p0
 		}
 		return
-	case planeFull:
-		legendre(x, 1, 0, phi, dphi)
-	case planeHalf:
-		legendre(x, 2, 0, phi, dphi)
-	case spherical:
-		sphericalValues(x, phi, dphi)
-		return
-	case radial:
-		legendre(2*x*x-1, 1, 0, phi, dphi)
-		for j := range dphi {
-			dphi[j] *= 4 * x
-		}
 	}
-	s := norms[b.kind][:n]
-	for j := range s {
-		phi[j] *= s[j]
-	}
-	if dphi != nil {
-		for j := range s {
-			dphi[j] *= s[j]
-		}
+	for j := range r {
+		phi[j], dphi[j] = p1, d1*dt
+		s := r[j].a*t + r[j].b
+		d0, d1 = d1, s*d1+r[j].a*p1-r[j].c*d0
+		p0, p1 = p1, s*p1-r[j].c*p0
 	}
 }
 
-// norms holds the factors that make the polynomials orthonormal, and the recurrence's own numbers.
-var norms = func() (s [axisKinds][maxDegrees]float64) {
-	for j := 0; j < maxDegrees; j++ {
-		s[planeHalf][j] = math.Sqrt(float64(4*j + 1))
-		s[planeFull][j] = math.Sqrt(float64(2*j + 1))
-		s[radial][j] = math.Sqrt(float64(2*j + 1))
-		s[spherical][j] = math.Sqrt(float64(4*j+3) / 3)
+// curve gives the sum of q times the polynomials at x, its slope and its curvature.
+func (b *base) curve(x float64, q []float64) (f, slope, bend float64) {
+	t, dt := b.inner(x)
+	r := recurrences[b.kind][:len(q)]
+	p0, p1, d0, d1, e0, e1 := 0.0, 1.0, 0.0, 0.0, 0.0, 0.0
+	for j, w := range q {
+		f += w * p1
+		slope += w * d1
+		bend += w * e1
+		a, c := r[j].a, r[j].c
+		s := a*t + r[j].b
+		e0, e1 = e1, s*e1+2*a*d1-c*e0
+		d0, d1 = d1, s*d1+a*p1-c*d0
+		p0, p1 = p1, s*p1-c*p0
 	}
-	return s
-}()
+	if b.kind != planeFull { // dt/dx = 4x
+		return f, slope * dt, bend*dt*dt + 4*slope
+	}
+	return f, slope, bend
+}
 
-// recur holds (2m+1)/(m+1) and m/(m+1) of the three-term recurrence of the Legendre polynomials (Abramowitz & Stegun 1964, 22.7.10).
-var recur = func() (r [2*maxDegrees + 4][2]float64) {
-	for m := range r {
-		r[m] = [2]float64{float64(2*m+1) / float64(m+1), float64(m) / float64(m+1)}
+// inner gives the variable that the polynomials are polynomials in, and its slope.
+func (b *base) inner(x float64) (t, slope float64) {
+	if b.kind == planeFull {
+		return x, 1
+	}
+	return 2*x*x - 1, 4 * x
+}
+
+// recurrences holds the numbers of φ(j+1) = (a·t+b)·φ(j) - c·φ(j-1). All the polynomials are Jacobi polynomials P(0,β): in x for planeFull
+// (β 0), else in t = 2x²-1: P2j(x) has β -1/2, Pj(t) has β 0 and P2j+1(x)/x has β 1/2 (DLMF 18.7.13, 18.7.14; the recurrence:
+// Abramowitz & Stegun 1964, 22.7.1).
+var recurrences = func() (r [axisKinds][maxDegrees]struct{ a, b, c float64 }) {
+	for kind := planeHalf; kind < axisKinds; kind++ {
+		beta := [axisKinds]float64{planeHalf: -0.5, spherical: 0.5}[kind]
+		norm := func(j int) float64 { return math.Sqrt((2*float64(j) + beta + 1) / (beta + 1)) }
+		for j := range r[kind] {
+			n := float64(j)
+			a, b, c := (beta+2)/2, -beta/2, 0.0
+			if j > 0 {
+				m := 2*n + beta
+				d := 2 * (n + 1) * (n + beta + 1) * m
+				a, b, c = (m+1)*(m+2)*m/d, -(m+1)*beta*beta/d, 2*n*(n+beta)*(m+2)/d
+				c *= norm(j+1) / norm(j-1)
+			}
+			up := norm(j+1) / norm(j)
+			r[kind][j].a, r[kind][j].b, r[kind][j].c = a*up, b*up, c
+		}
 	}
 	return r
 }()
-
-// legendre fills p with P(first), P(first+every), … at x and, unless nil, dp with their slopes.
-func legendre(x float64, every, first int, p, dp []float64) {
-	p0, p1 := 1.0, x // P(m), P(m+1)
-	d0, d1 := 0.0, 1.0
-	next, want := 0, first
-	for m := 0; next < len(p); m++ {
-		if m == want {
-			p[next] = p0
-			if dp != nil {
-				dp[next] = d0
-			}
-			next++
-			want += every
-		}
-		a, c := recur[m+1][0], recur[m+1][1]
-		p2 := a*x*p1 - c*p0
-		if dp != nil {
-			d0, d1 = d1, a*(p1+x*d1)-c*d0
-		}
-		p0, p1 = p1, p2
-	}
-}
-
-// sphericalValues fills phi with sqrt((4j+3)/3) P(2j+1)(x)/x and dphi with the slopes, by a recurrence in x² that needs no division.
-func sphericalValues(x float64, phi, dphi []float64) {
-	// P(2j+1) = x·q(j), P(2j) = e(j):  q(j) = a(2j) e(j) - c(2j) q(j-1),  e(j+1) = a(2j+1) x² q(j) - c(2j+1) e(j)
-	x2 := x * x
-	e, q := 1.0, 0.0
-	de, dq := 0.0, 0.0
-	s := norms[spherical][:len(phi)]
-	for j := range phi {
-		a, c := recur[2*j][0], recur[2*j][1]
-		q, dq = a*e-c*q, a*de-c*dq
-		phi[j] = s[j] * q
-		if dphi != nil {
-			dphi[j] = s[j] * dq
-		}
-		a, c = recur[2*j+1][0], recur[2*j+1][1]
-		e, de = a*x2*q-c*e, a*(2*x*q+x2*dq)-c*de
-	}
-}
 
 // node is a point and weight of a quadrature rule on 0…1.
 type node struct{ x, w float64 }
@@ -279,13 +285,13 @@ type film struct {
 // wellMixed is an axis without extent.
 var wellMixed = &axisStep{rate: []float64{0}, b: []float64{1}, gUp: []float64{0}, gLo: []float64{0}}
 
-// step solves the axis for one step. alpha: diffusivity, m²/s; k: conductivity, W/(m·K).
-func (a *axis) step(mem *slab, p Properties, lo, up film) *axisStep {
+// step solves the axis for one step; the result lies in mem, which is not tmp.
+func (a *axis) step(mem, tmp *slab, p Properties, lo, up film) *axisStep {
 	n := a.n
 	if a.kind == lumped {
 		return wellMixed
 	}
-	s := &axisStep{rate: mem.take(n)}
+	mark := tmp.free
 	scale := p.KWmK / (p.RhoKgM3 * p.CJkgK) / (a.radiusM * a.radiusM)
 	rho := func(f film) float64 {
 		if f.group < 0 {
@@ -296,58 +302,55 @@ func (a *axis) step(mem *slab, p Properties, lo, up film) *axisStep {
 		}
 		return math.Min(f.u*a.radiusM/p.KWmK*a.weight(), heldBiot)
 	}
-	d, q := a.d, a.u
-	var g1, g2 []float64
+	s := &axisStep{rate: mem.take(n), gUp: mem.take(n), gLo: mem.take(n), b: mem.take(n * n)}
+	var d, g []float64
 	if a.kind == planeFull {
-		var q1 []float64
-		d, q1, g1 = rankOne(mem, d, a.low, rho(lo))
-		v := mem.take(n)
-		for i := range v {
-			for m, t := range a.top {
-				v[i] += q1[m*n+i] * t
-			}
-		}
+		d1, q1, g1 := rankOne(tmp, a.d, a.low, rho(lo))
+		v := tmp.take(n)
+		addColumns(v, q1, n, a.top)
 		var q2 []float64
-		d, q2, g2 = rankOne(mem, d, v, rho(up))
-		g := mem.take(n)
-		for i := range g {
-			for m := range g1 {
-				g[i] += q2[m*n+i] * g1[m]
-			}
-		}
-		g1 = g
-		q = multiply(mem, n, multiply(mem, n, q, q1), q2)
+		d, q2, g = rankOne(tmp, d1, v, rho(up))
+		addColumns(s.gLo, q2, n, g1)
+		multiply(n, a.u, multiply(n, q1, q2, tmp.take(n*n)), s.b)
 	} else {
-		var q2 []float64
-		d, q2, g2 = rankOne(mem, d, a.top, rho(up))
-		q = multiply(mem, n, q, q2)
-		g1 = mem.take(n)
+		var q []float64
+		d, q, g = rankOne(tmp, a.d, a.top, rho(up))
+		multiply(n, a.u, q, s.b)
 	}
-	s.b = q
 	for i := range d {
 		s.rate[i] = d[i] * scale
-		g1[i] *= scale
-		g2[i] *= scale
+		s.gLo[i] *= scale
+		s.gUp[i] = g[i] * scale
 	}
-	s.gLo, s.gUp = g1, g2
+	tmp.free = mark
 	return s
 }
 
 // heldBiot stands for an infinite film: the surface is within 1e-10 of its medium from the first instant on.
 const heldBiot = 1e12
 
-// multiply gives the product of two n×n matrices.
-func multiply(mem *slab, n int, a, b []float64) []float64 {
-	c := mem.take(n * n)
+// multiply adds the product of two n×n matrices to c.
+func multiply(n int, a, b, c []float64) []float64 {
 	for i := 0; i < n; i++ {
-		ci := c[i*n : i*n+n]
-		for k := 0; k < n; k++ {
-			if f := a[i*n+k]; f != 0 {
-				for j, x := range b[k*n : k*n+n] {
-					ci[j] += f * x
-				}
-			}
-		}
+		addColumns(c[i*n:i*n+n], b, n, a[i*n:i*n+n])
 	}
 	return c
+}
+
+// addColumns adds to out the product of v with the rows of m (n wide), of which out may be shorter: four rows at a time.
+func addColumns(out, m []float64, n int, v []float64) {
+	k := 0
+	for ; k+4 <= len(v); k += 4 {
+		p, q, r, s := v[k], v[k+1], v[k+2], v[k+3]
+		a, b, c, d := m[k*n:][:len(out)], m[(k+1)*n:][:len(out)], m[(k+2)*n:][:len(out)], m[(k+3)*n:][:len(out)]
+		for j := range out {
+			out[j] += p*a[j] + q*b[j] + r*c[j] + s*d[j]
+		}
+	}
+	for ; k < len(v); k++ {
+		f := v[k]
+		for j, x := range m[k*n:][:len(out)] {
+			out[j] += f * x
+		}
+	}
 }

@@ -316,6 +316,39 @@ func (v valley) bottom(slope func(float64) float64) float64 {
 	return x
 }
 
+// newton finds the minimum of sign times the sum of q times the polynomials, by Newton's method from the start on, kept between the ends
+// by halving; an end where there is none inside.
+func (v valley) newton(b *base, q []float64, sign float64) (c, x float64) {
+	lo, hi, x := v.lo, v.hi, v.start
+	tried := [2]bool{v.start == lo, v.start == hi}
+	for it := 0; ; it++ {
+		c, slope, bend := b.curve(x, q)
+		slope, bend = sign*slope, sign*bend
+		if slope < 0 || slope == 0 && bend < 0 {
+			lo = x
+		} else {
+			hi = x
+		}
+		next := x - slope/bend
+		switch {
+		case bend > 0 && next >= lo && next <= hi:
+			if gain := slope * (x - next) / 2; gain < 1e-6 { // K: no more is to be had
+				return c - sign*gain, next
+			}
+		case slope < 0 && !tried[1]: // the end may be the minimum
+			next, tried[1] = v.hi, true
+		case slope > 0 && !tried[0]:
+			next, tried[0] = v.lo, true
+		default:
+			next = (lo + hi) / 2
+		}
+		if hi-lo < 1e-5 || it == 60 {
+			return c, x
+		}
+		x = next
+	}
+}
+
 // Scan gives the first look at the history; it is made once and shared, so do not change it.
 func (h *History) Scan() *Scan {
 	if h.scan == nil {

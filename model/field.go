@@ -3,6 +3,7 @@ package model
 import (
 	"math"
 	"slices"
+	"sync"
 )
 
 // A field is the temperature of every place in the food over the whole chain, in one of two forms: tensor, or product of axes.
@@ -54,7 +55,8 @@ type tensor struct {
 	steps []*tensorStep
 	segs  []tensorSeg
 	now   tensorShot
-	mem   slab
+	mem   *slab // for what lives as long as the field
+	tmp   *slab // for what is needed within a call
 }
 
 type tensorStep struct {
@@ -65,8 +67,8 @@ type tensorStep struct {
 	meanS  []float64    // by medium: mean of response s
 	meanW  []float64    // by medium: mean of response w
 	gridB  [3][]float64 // gridB[a][g*n+i]: mode i at node g
-	steady [][]float64  // by medium: response s at all nodes; made when first needed
-	creep  [][]float64  // by medium: response w at all nodes
+	held   []response   // groups at all nodes; made when first needed
+	lines  []response   // one axis: groups as polynomials, made with held
 }
 
 // response is what a medium of 1 K does in the long run: the field s, and the field w by which s lags behind a slope of 1 K/s.
@@ -81,22 +83,40 @@ type tensorSeg struct {
 }
 
 // slab hands out zeroed slices from large pieces, since a field is made of very many small ones.
-type slab []float64
+type slab struct {
+	free []float64
+	all  []float64 // scratch: the newest piece, to be handed out again
+	wide int       // scratch: length of all; 0: the pieces are kept by their users
+}
 
 func (s *slab) take(n int) []float64 {
-	if len(*s) < n {
-		*s = make([]float64, max(n, 2048))
+	if len(s.free) < n {
+		s.free = make([]float64, max(n, 1024, 2*s.wide))
+		if s.wide > 0 {
+			s.all, s.wide = s.free, len(s.free)
+		}
 	}
-	out := (*s)[:n:n]
-	*s = (*s)[n:]
+	out := s.free[:n:n]
+	s.free = s.free[n:]
+	if s.wide > 0 {
+		clear(out)
+	}
 	return out
 }
+
+// scratch is memory for what does not outlive one solution: a second field, and what is needed within a call.
+type scratch struct{ field, call slab }
+
+var scratches = sync.Pool{New: func() any { return &scratch{slab{wide: 1}, slab{wide: 1}} }}
+
+// again makes all of it free.
+func (s *scratch) again() { s.field.free, s.call.free = s.field.all, s.call.all }
 
 func (f *tensor) size() int { return f.axes[0].n * f.axes[1].n * f.axes[2].n }
 
 // newTensor starts a field at one temperature.
-func newTensor(axes [3]*axis, nd *nodes, startC float64) *tensor {
-	f := &tensor{axes: axes, nodes: nd, start: startC}
+func newTensor(axes [3]*axis, nd *nodes, startC float64, mem, tmp *slab) *tensor {
+	f := &tensor{axes: axes, nodes: nd, start: startC, mem: mem, tmp: tmp}
 	f.now.f = f
 	f.now.last = make([]int, axes[0].n*axes[1].n)
 	return f
@@ -107,10 +127,13 @@ func (f *tensor) run(cs *chainStep) {
 	st := &tensorStep{extra: cs.lumpW}
 	ax := f.axes
 	for a := range ax {
-		st.ax[a] = ax[a].step(&f.mem, cs.props, cs.lo[a], cs.up[a])
+		st.ax[a] = ax[a].step(f.mem, f.tmp, cs.props, cs.lo[a], cs.up[a])
 		st.e0[a] = st.ax[a].b[:ax[a].n]
 	}
-	n := f.size()
+	n, m := f.size(), len(cs.media)
+	responses := make([]response, 3*m)
+	st.groups, st.held, st.lines = responses[:0:m], responses[m:m:2*m], responses[2*m:2*m:3*m]
+	st.meanS, st.meanW = f.mem.take(m)[:0], f.mem.take(m)[:0]
 	for g := range cs.media {
 		r := response{f.mem.take(n), f.mem.take(n)}
 		for a := range ax {
@@ -146,7 +169,7 @@ func (f *tensor) pop() {
 	for len(f.segs) > 0 && f.segs[len(f.segs)-1].step == last {
 		f.segs = f.segs[:len(f.segs)-1]
 	}
-	f.now.of, f.now.known = nil, false // its place in segs will hold another segment
+	f.now.of, f.now.kept = nil, [8]restSlice{} // its place in segs will hold another segment
 }
 
 // segments appends the stretches between the knots of the media; now holds the modes at the start of the step.
@@ -186,7 +209,7 @@ func (f *tensor) segments(cs *chainStep, st *tensorStep, now []float64) {
 		if d := to - from; d != long { // courses mostly have even steps
 			long = d
 			if decay == nil {
-				decay = make([]float64, n)
+				decay = f.tmp.take(n)
 			}
 			st.eachRate(func(i int, rate float64) { decay[i] = math.Exp(-rate * d) })
 		}
@@ -265,30 +288,32 @@ func (st *tensorStep) eachRate(do func(i int, rate float64)) {
 // carry turns the field at the end of the last segment into modes of the next step.
 func (f *tensor) carry(st *tensorStep) []float64 {
 	n := f.size()
-	now := f.mem.take(n)
+	out := f.mem.take(n)
 	if len(f.segs) == 0 {
-		addOuter(now, st, 0, st.e0[0])
-		for i := range now {
-			now[i] *= f.start
+		addOuter(out, st, 0, st.e0[0])
+		for i := range out {
+			out[i] *= f.start
 		}
-		return now
+		return out
 	}
+	mark := f.tmp.free
 	sg := &f.segs[len(f.segs)-1]
+	now := f.tmp.take(n)
 	f.modes(sg, sg.t1-sg.t0, now)
-	tmp := f.mem.take(n)
 	var p [3][]float64
 	for a := range f.axes { // from modes of the old step to modes of the new one
-		p[a] = project(&f.mem, f.axes[a].n, sg.step.ax[a].b, st.ax[a].b)
+		p[a] = project(f.tmp, f.axes[a].n, sg.step.ax[a].b, st.ax[a].b)
 	}
 	if f.single() {
-		along(now, tmp, p[0], 1, n, 1)
-		return tmp
+		addRows(out, p[0], n, now)
+	} else {
+		n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
+		along(now, out, p[0], 1, n0, n1*n2)
+		along(out, now, p[1], n0, n1, n2)
+		along(now, out, p[2], n0*n1, n2, 1)
 	}
-	n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
-	along(now, tmp, p[0], 1, n0, n1*n2)
-	along(tmp, now, p[1], n0, n1, n2)
-	along(now, tmp, p[2], n0*n1, n2, 1)
-	return tmp
+	f.tmp.free = mark
+	return out
 }
 
 // single tells whether there is one axis only.
@@ -297,12 +322,23 @@ func (f *tensor) single() bool { return f.axes[1].n == 1 && f.axes[2].n == 1 }
 // project gives newᵀ·old: n×n, row = new mode.
 func project(mem *slab, n int, old, new []float64) []float64 {
 	p := mem.take(n * n)
-	for m := 0; m < n; m++ {
+	m := 0
+	for ; m+2 <= n; m += 2 {
+		a, b := old[m*n:][:n], old[(m+1)*n:][:n]
 		for i := 0; i < n; i++ {
-			if f := new[m*n+i]; f != 0 {
-				for j, x := range old[m*n : m*n+n] {
-					p[i*n+j] += f * x
-				}
+			f, g := new[m*n+i], new[(m+1)*n+i]
+			o := p[i*n:][:n]
+			for j := range o {
+				o[j] += f*a[j] + g*b[j]
+			}
+		}
+	}
+	for ; m < n; m++ {
+		for i := 0; i < n; i++ {
+			f := new[m*n+i]
+			o := p[i*n:][:n]
+			for j, x := range old[m*n:][:n] {
+				o[j] += f * x
 			}
 		}
 	}
@@ -311,22 +347,15 @@ func project(mem *slab, n int, old, new []float64) []float64 {
 
 // along applies the n×n matrix p to the middle index of in (outer × n × inner).
 func along(in, out, p []float64, outer, n, inner int) {
+	clear(out)
 	for o := 0; o < outer; o++ {
 		block, res := in[o*n*inner:(o+1)*n*inner], out[o*n*inner:(o+1)*n*inner]
+		if inner == 1 {
+			addRows(res, p, n, block)
+			continue
+		}
 		for i := 0; i < n; i++ {
-			r := res[i*inner : (i+1)*inner]
-			for k := range r {
-				r[k] = 0
-			}
-			for j := 0; j < n; j++ {
-				f := p[i*n+j]
-				if f == 0 {
-					continue
-				}
-				for k, x := range block[j*inner : (j+1)*inner] {
-					r[k] += f * x
-				}
-			}
+			addColumns(res[i*inner:(i+1)*inner], block, inner, p[i*n:i*n+n])
 		}
 	}
 }
@@ -364,7 +393,7 @@ func (f *tensor) modes(sg *tensorSeg, tau float64, out []float64) {
 	}
 }
 
-// decaying fills out with what still decays and tells the number of modes by axis that are worth looking at; the others are not touched.
+// decaying fills out with what still decays and tells the number of modes by axis that are worth looking at.
 func (f *tensor) decaying(sg *tensorSeg, tau float64, out []float64) (keep [3]int) {
 	if f.single() && sg.step.extra == 0 {
 		k := decays(sg.step.ax[0].rate, tau, out)
@@ -391,7 +420,8 @@ func (f *tensor) decaying(sg *tensorSeg, tau float64, out []float64) (keep [3]in
 				k--
 			}
 			f.now.last[i*n1+j] = k
-			c, o := sg.c[at:at+k], out[at:at+k]
+			c, o := sg.c[at:at+k], out[at:at+n2]
+			clear(o[k:])
 			for k, z := range e[2][:k] {
 				o[k] = c[k] * xy * z
 			}
@@ -419,15 +449,8 @@ func modeValues(a *axis, b []float64, x float64, out []float64) {
 	n := a.n
 	var phi [maxDegrees]float64
 	a.values(x, phi[:n], nil)
-	for i := range out[:n] {
-		out[i] = 0
-	}
-	for m := 0; m < n; m++ {
-		f := phi[m]
-		for i, v := range b[m*n : m*n+n] {
-			out[i] += f * v
-		}
-	}
+	clear(out[:n])
+	addColumns(out[:n], b, n, phi[:n])
 }
 
 func (f *tensor) course(x coord, times, out []float64) {
@@ -508,11 +531,9 @@ type tensorShot struct {
 	all    []float64  // what the media hold, made when asked for
 	of     *tensorSeg // the segment that all belongs to
 	moving bool       // a medium changes in it
-	rest   []float64  // one axis: all as polynomials
-	known  bool       // rest is filled
-	line   []float64  // one axis: the whole field as polynomials
-	lined  bool       // line is filled for this instant
 	last   []int      // by the first two axes: how many modes of the third are worth looking at
+	kept   [8]restSlice
+	turn   int // which of kept to give up next
 	b1, b2 []float64
 }
 
@@ -524,7 +545,6 @@ func (f *tensor) at(t float64) snapshot {
 	s.sg = &f.segs[f.segAt(t)]
 	s.tau = math.Min(math.Max(t-s.sg.t0, 0), s.sg.t1-s.sg.t0)
 	s.keep = f.decaying(s.sg, s.tau, s.amp)
-	s.lined = false
 	return s
 }
 
@@ -534,7 +554,7 @@ func (f *tensor) gridValues(st *tensorStep) {
 		return
 	}
 	for a := range f.axes {
-		st.gridB[a] = nodeModes(&f.mem, f.axes[a], f.nodes, a, st.ax[a].b)
+		st.gridB[a] = nodeModes(f.mem, f.axes[a], f.nodes, a, st.ax[a].b)
 	}
 	var whole [3]int
 	for a := range whole {
@@ -542,10 +562,17 @@ func (f *tensor) gridValues(st *tensorStep) {
 	}
 	m := f.nodes.count()
 	for _, r := range st.groups {
-		s, w := f.mem.take(m), f.mem.take(m)
-		f.now.contract(r.s, whole, nil, st, s)
-		f.now.contract(r.w, whole, nil, st, w)
-		st.steady, st.creep = append(st.steady, s), append(st.creep, w)
+		at := response{f.mem.take(m), f.mem.take(m)}
+		f.now.contract(r.s, whole, nil, st, at.s)
+		f.now.contract(r.w, whole, nil, st, at.w)
+		st.held = append(st.held, at)
+		if f.single() {
+			n := f.axes[0].n
+			line := response{f.mem.take(n), f.mem.take(n)}
+			addRows(line.s, st.ax[0].b, n, r.s)
+			addRows(line.w, st.ax[0].b, n, r.w)
+			st.lines = append(st.lines, line)
+		}
 	}
 }
 
@@ -554,12 +581,7 @@ func nodeModes(mem *slab, ax *axis, nd *nodes, a int, b []float64) []float64 {
 	n := ax.n
 	out := mem.take(len(nd.x[a]) * n)
 	for g := range nd.x[a] {
-		o := out[g*n : g*n+n]
-		for m, f := range nd.phi[a][g*n : g*n+n] {
-			for i, v := range b[m*n : m*n+n] {
-				o[i] += f * v
-			}
-		}
+		addColumns(out[g*n:g*n+n], b, n, nd.phi[a][g*n:g*n+n])
 	}
 	return out
 }
@@ -572,13 +594,8 @@ func (s *tensorShot) contract(amp []float64, keep [3]int, last []int, st *tensor
 	n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
 	g0, g1, g2 := len(f.nodes.x[0]), len(f.nodes.x[1]), len(f.nodes.x[2])
 	if g1 == 1 && g2 == 1 { // one axis
-		for g := 0; g < g0; g++ {
-			sum := 0.0
-			for i, v := range st.gridB[0][g*n0 : g*n0+keep[0]] {
-				sum += amp[i] * v
-			}
-			out[g] = sum
-		}
+		clear(out)
+		addRows(out, st.gridB[0], n0, amp[:keep[0]])
 		return
 	}
 	// last axis first: nodes of axis 2, then 1, then 0
@@ -591,60 +608,46 @@ func (s *tensorShot) contract(amp []float64, keep [3]int, last []int, st *tensor
 	}
 	b1, b2 := s.b1[:need1], s.b2[:need2]
 	for i := 0; i < keep[0]; i++ {
+		rows := keep[1]
 		for j := 0; j < keep[1]; j++ {
 			k := keep[2]
 			if last != nil {
 				k = last[i*n1+j]
 			}
-			a := amp[(i*n1+j)*n2 : (i*n1+j)*n2+k]
-			o := b1[(i*n1+j)*g2 : (i*n1+j+1)*g2]
-			for g := range o {
-				sum := 0.0
-				for k, v := range st.gridB[2][g*n2 : g*n2+k] {
-					sum += a[k] * v
-				}
-				o[g] = sum
+			if k == 0 { // the later ones have none either
+				rows = j
+				break
 			}
+			o := b1[(i*n1+j)*g2 : (i*n1+j+1)*g2]
+			clear(o)
+			addRows(o, st.gridB[2], n2, amp[(i*n1+j)*n2:][:k])
 		}
-	}
-	for i := 0; i < keep[0]; i++ {
 		for g := 0; g < g1; g++ {
 			o := b2[(i*g1+g)*g2 : (i*g1+g+1)*g2]
-			for k := range o {
-				o[k] = 0
-			}
-			for j, v := range st.gridB[1][g*n1 : g*n1+keep[1]] {
-				if last != nil && last[i*n1+j] == 0 {
-					break
-				}
-				for k, x := range b1[(i*n1+j)*g2 : (i*n1+j+1)*g2] {
-					o[k] += v * x
-				}
-			}
+			clear(o)
+			addColumns(o, b1[i*n1*g2:], g2, st.gridB[1][g*n1:][:rows])
 		}
 	}
 	plane := g1 * g2
+	clear(out)
 	for g := 0; g < g0; g++ {
-		o := out[g*plane : (g+1)*plane]
-		for k := range o {
-			o[k] = 0
-		}
-		for i, v := range st.gridB[0][g*n0 : g*n0+keep[0]] {
-			for k, x := range b2[i*plane : (i+1)*plane] {
-				o[k] += v * x
-			}
-		}
+		addColumns(out[g*plane:(g+1)*plane], b2, plane, st.gridB[0][g*n0:][:keep[0]])
 	}
 }
 
 func (s *tensorShot) grid(out []float64) {
 	st := s.sg.step
 	s.f.gridValues(st)
+	if s.f.single() {
+		s.sg.mix(s.tau, out, st.held)
+		addRows(out, st.gridB[0], s.f.axes[0].n, s.amp[:s.keep[0]])
+		return
+	}
 	s.contract(s.amp, s.keep, s.last, st, out)
-	for g := range st.groups {
+	for g := range st.held {
 		level, slope := s.sg.level[g]+s.sg.slope[g]*s.tau, s.sg.slope[g]
-		for i, v := range st.steady[g] {
-			out[i] += v*level - st.creep[g][i]*slope
+		for i, v := range st.held[g].s {
+			out[i] += v*level - st.held[g].w[i]*slope
 		}
 	}
 }
@@ -690,73 +693,92 @@ func (s *tensorShot) slice(axis int, x coord, out []float64) {
 		}
 	}
 	var q [maxDegrees]float64
-	sumUp := func(amp []float64, keep [3]int, last []int) {
-		for a := 0; a < keep[0]; a++ {
-			for b := 0; b < keep[1]; b++ {
-				end := keep[2]
-				if last != nil {
-					end = last[a*n[1]+b]
-				}
-				at := (a*n[1] + b) * n[2]
-				row := amp[at : at+end]
-				if axis == 2 {
-					xy := v[0][a] * v[1][b]
-					for k, c := range row {
-						q[k] += xy * c
-					}
-					continue
-				}
-				dot := 0.0
-				for k, c := range row {
-					dot += c * v[2][k]
-				}
-				if axis == 0 {
-					q[a] += dot * v[1][b]
-				} else {
-					q[b] += dot * v[0][a]
-				}
-			}
-		}
+	s.along(axis, &v, s.amp, s.keep, s.last, q[:])
+	still := s.restAlong(axis, x, &v)
+	for i, c := range still {
+		q[i] += c
 	}
-	sumUp(s.amp, s.keep, s.last)
-	sumUp(s.resting(), n, nil)
 	toPolynomials(n[axis], st.ax[axis].b, q[:], out)
 }
 
-// only gives the polynomials of a field with one axis; they are the same for every place and made once an instant.
-func (s *tensorShot) only(out []float64) {
-	n, b := s.f.axes[0].n, s.sg.step.ax[0].b
-	if s.rest == nil {
-		s.rest, s.line = make([]float64, n), make([]float64, n)
-	}
-	before := s.of
-	if all := s.resting(); s.of != before || s.moving || !s.known {
-		toPolynomials(n, b, all, s.rest)
-		s.known = true
-	}
-	if !s.lined {
-		amp := s.amp[:s.keep[0]]
-		for m := range s.line {
-			sum := s.rest[m]
-			for i, v := range b[m*n : m*n+len(amp)] {
-				sum += v * amp[i]
+// along adds to q the modes of one axis, with the others summed up at a place where their modes are v.
+func (s *tensorShot) along(axis int, v *[3][maxDegrees]float64, amp []float64, keep [3]int, last []int, q []float64) {
+	n1, n2 := s.f.axes[1].n, s.f.axes[2].n
+	var dots [maxDegrees]float64
+	for a := 0; a < keep[0]; a++ {
+		if axis == 2 {
+			for b := 0; b < keep[1]; b++ {
+				dots[b] = v[0][a] * v[1][b]
 			}
-			s.line[m] = sum
+			addColumns(q[:keep[2]], amp[a*n1*n2:], n2, dots[:keep[1]])
+			continue
 		}
-		s.lined = true
+		clear(dots[:keep[1]])
+		for b := 0; b < keep[1]; b += 4 { // later rows are shorter
+			width := keep[2]
+			if last != nil {
+				width = last[a*n1+b]
+			}
+			if width == 0 {
+				break
+			}
+			addRows(dots[b:min(b+4, keep[1])], amp[(a*n1+b)*n2:], n2, v[2][:width])
+		}
+		if axis == 1 {
+			for b, d := range dots[:keep[1]] {
+				q[b] += d * v[0][a]
+			}
+			continue
+		}
+		for b, d := range dots[:keep[1]] {
+			q[a] += d * v[1][b]
+		}
 	}
-	copy(out, s.line)
+}
+
+// restSlice is what the media hold along one axis through a place, in modes.
+type restSlice struct {
+	sg   *tensorSeg
+	axis int
+	x    coord
+	q    []float64
+}
+
+// restAlong gives what the media hold along one axis through a place, where the modes of the others are v. Much is asked again for the same
+// lines, along edges and the axes of symmetry, and kept.
+func (s *tensorShot) restAlong(axis int, x coord, v *[3][maxDegrees]float64) []float64 {
+	all := s.resting()
+	x[axis] = 0
+	if !s.moving {
+		for i := range s.kept {
+			if k := &s.kept[i]; k.sg == s.sg && k.axis == axis && k.x == x {
+				return k.q
+			}
+		}
+	}
+	k := &s.kept[s.turn]
+	s.turn = (s.turn + 1) % len(s.kept)
+	if k.q == nil {
+		k.q = make([]float64, maxDegrees)
+	}
+	k.sg, k.axis, k.x = s.sg, axis, x
+	clear(k.q)
+	n := [3]int{s.f.axes[0].n, s.f.axes[1].n, s.f.axes[2].n}
+	s.along(axis, v, all, n, nil, k.q)
+	return k.q
+}
+
+// only gives the polynomials of a field with one axis.
+func (s *tensorShot) only(out []float64) {
+	s.f.gridValues(s.sg.step)
+	s.sg.mix(s.tau, out, s.sg.step.lines)
+	addRows(out, s.sg.step.ax[0].b, s.f.axes[0].n, s.amp[:s.keep[0]])
 }
 
 // toPolynomials turns modes into polynomials: out = b·q.
 func toPolynomials(n int, b, q, out []float64) {
-	for m := 0; m < n; m++ {
-		sum := 0.0
-		for i, v := range b[m*n : m*n+n] {
-			sum += v * q[i]
-		}
-		out[m] = sum
-	}
+	clear(out[:n])
+	addRows(out[:n], b, n, q[:n])
 }
 
 func (s *tensorShot) mean() float64 {
@@ -766,7 +788,7 @@ func (s *tensorShot) mean() float64 {
 		for i, e := range st.e0[0][:s.keep[0]] {
 			sum += s.amp[i] * e
 		}
-		return sum + s.steadyMean()
+		return sum + s.sg.restMean(s.tau)
 	}
 	n1, n2 := f.axes[1].n, f.axes[2].n
 	sum := 0.0
@@ -779,15 +801,5 @@ func (s *tensorShot) mean() float64 {
 			}
 		}
 	}
-	return sum + s.steadyMean()
-}
-
-// steadyMean is the mean of what the media hold.
-func (s *tensorShot) steadyMean() float64 {
-	st, sum := s.sg.step, 0.0
-	for g := range st.groups {
-		level, slope := s.sg.level[g]+s.sg.slope[g]*s.tau, s.sg.slope[g]
-		sum += st.meanS[g]*level - st.meanW[g]*slope
-	}
-	return sum
+	return sum + s.sg.restMean(s.tau)
 }

@@ -6,63 +6,116 @@ import "math"
 // rounding grows by about one unit of the last place a sample.
 const anew = 64
 
-// sampleLine fills samples of a field with one axis, as Sample does for any, with less work: even steps of time within a segment
-// multiply each mode by the same number, and what the media hold is added up once a segment.
+// lineSampler walks through a field with one axis: even steps of time within a segment multiply each mode by the same number,
+// and what the media hold is added up once a segment.
+type lineSampler struct {
+	f         *tensor
+	b         *body
+	sg        *tensorSeg
+	amp       []float64 // what decays, by mode
+	factor    []float64 // by mode, over one step of time
+	keep      int       // modes worth looking at
+	step      float64   // s, that factor belongs to
+	carried   int       // steps of time since the exponentials were taken
+	rest      []float64 // what the media hold, at the nodes
+	restMean  float64
+	tau       float64   // s since the start of the segment
+	line      []float64 // the whole field as polynomials, if lined
+	restLine  []float64 // what the media hold as polynomials, if restLined
+	lined     bool
+	restLined bool
+	cold, hot float64 // where the coldest and hottest place were found last between nodes
+}
+
+// sampleLine fills samples of a field with one axis, as Sample does for any, with less work.
 func (f *tensor) sampleLine(h *History, s *Samples) {
-	b, n := h.body, f.axes[0].n
-	amp, factor, rest := make([]float64, n), make([]float64, n), make([]float64, len(b.buf))
-	var sg *tensorSeg
-	restMean, step := 0.0, math.NaN()
-	carried, keep, span := 0, n, 0
+	n, g := f.axes[0].n, len(h.body.buf)
+	mem := make([]float64, 4*n+g)
+	w := lineSampler{f: f, b: h.body, amp: mem[:n], factor: mem[n : 2*n], line: mem[2*n : 3*n], restLine: mem[3*n : 4*n], rest: mem[4*n:]}
+	span, last := 0, 0.0
 	for k, t := range s.TimesS {
 		for span < len(h.Spans)-1 && t > h.Spans[span].EndS {
 			span++
 		}
-		fresh := sg == nil || t > sg.t1
-		if fresh {
-			sg = &f.segs[f.segAt(t)]
-		}
-		st, tau := sg.step, math.Min(math.Max(t-sg.t0, 0), sg.t1-sg.t0)
-		if fresh || carried == anew {
-			f.gridValues(st)
-			keep, carried, step = decays(st.ax[0].rate, tau, amp), 0, math.NaN()
-			for i, c := range sg.c[:keep] {
-				amp[i] *= c
-			}
-		} else {
-			if d := t - s.TimesS[k-1]; d != step {
-				step = d
-				for i, r := range st.ax[0].rate[:keep] {
-					factor[i] = math.Exp(-r * d)
-				}
-			}
-			carried++
-			for i, x := range factor[:keep] {
-				amp[i] *= x
-			}
-			for keep > 1 && math.Abs(amp[keep-1]) < 1e-12 {
-				keep--
-			}
-		}
-		if fresh || sg.moves() {
-			restMean = sg.rest(tau, rest)
-		}
-		for g := range b.buf {
-			sum := rest[g]
-			for i, v := range st.gridB[0][g*n : g*n+keep] {
-				sum += v * amp[i]
-			}
-			b.buf[g] = sum
-		}
-		mean := restMean
-		for i, v := range st.e0[0][:keep] {
-			mean += v * amp[i]
-		}
-		low, high := f.ends(b, t)
+		mean := w.moveTo(t, t-last)
+		last = t
+		low, high := w.ends()
 		hull := h.hull[span]
-		s.Points[0][k], s.Mean[k] = clamp(b.buf[b.order[0]], hull), clamp(mean, hull)
-		s.Coldest[k], s.ColdestAt[k] = clamp(low.c, hull), b.place(low.x)
-		s.Hottest[k], s.HottestAt[k] = clamp(high.c, hull), b.place(high.x)
+		s.Points[0][k], s.Mean[k] = clamp(w.b.buf[w.b.order[0]], hull), clamp(mean, hull)
+		s.Coldest[k], s.ColdestAt[k].UpM = clamp(low.c, hull), low.x[0]*w.b.radii[0]
+		s.Hottest[k], s.HottestAt[k].UpM = clamp(high.c, hull), high.x[0]*w.b.radii[0]
+	}
+}
+
+// moveTo fills the nodes with the field d seconds after the last instant, at t, and gives the mean.
+func (w *lineSampler) moveTo(t, d float64) (mean float64) {
+	fresh := w.sg == nil || t > w.sg.t1
+	if fresh {
+		w.sg = &w.f.segs[w.f.segAt(t)]
+	}
+	sg, st := w.sg, w.sg.step
+	tau := math.Min(math.Max(t-sg.t0, 0), sg.t1-sg.t0)
+	w.tau = tau
+	if fresh || w.carried == anew {
+		w.f.gridValues(st)
+		w.keep, w.carried, w.step = decays(st.ax[0].rate, tau, w.amp), 0, math.NaN()
+		for i, c := range sg.c[:w.keep] {
+			w.amp[i] *= c
+		}
+	} else {
+		if d != w.step {
+			w.step = d
+			for i, r := range st.ax[0].rate[:w.keep] {
+				w.factor[i] = math.Exp(-r * d)
+			}
+		}
+		w.carried++
+		for i, x := range w.factor[:w.keep] {
+			w.amp[i] *= x
+		}
+		for w.keep > 1 && math.Abs(w.amp[w.keep-1]) < 1e-12 {
+			w.keep--
+		}
+	}
+	if fresh || sg.moves() {
+		sg.mix(tau, w.rest, st.held)
+		w.restMean, w.restLined = sg.restMean(tau), false
+	}
+	w.lined = false
+	amp := w.amp[:w.keep]
+	copy(w.b.buf, w.rest)
+	addRows(w.b.buf, st.gridB[0], w.f.axes[0].n, amp)
+	mean = w.restMean
+	for i, v := range st.e0[0][:len(amp)] {
+		mean += v * amp[i]
+	}
+	return mean
+}
+
+// addRows adds to each out the product of a row of m (n wide) with v, of which there may be fewer than n: four rows at a time,
+// so that the sums do not wait for each other.
+func addRows(out, m []float64, n int, v []float64) {
+	g := 0
+	for ; g+4 <= len(out); g += 4 {
+		a, b, c, d := m[g*n:][:len(v)], m[(g+1)*n:][:len(v)], m[(g+2)*n:][:len(v)], m[(g+3)*n:][:len(v)]
+		var p, q, r, s float64
+		for i, x := range v {
+			p += a[i] * x
+			q += b[i] * x
+			r += c[i] * x
+			s += d[i] * x
+		}
+		out[g] += p
+		out[g+1] += q
+		out[g+2] += r
+		out[g+3] += s
+	}
+	for ; g < len(out); g++ {
+		sum := 0.0
+		for i, x := range m[g*n:][:len(v)] {
+			sum += x * v[i]
+		}
+		out[g] += sum
 	}
 }
 
@@ -76,44 +129,127 @@ func (sg *tensorSeg) moves() bool {
 	return false
 }
 
-// rest fills out with what the media hold at the nodes, tau after the start of a segment, and gives its mean.
-func (sg *tensorSeg) rest(tau float64, out []float64) (mean float64) {
-	st := sg.step
+// mix fills out with what the media hold, tau after the start of a segment: r are the responses to each, in any form.
+func (sg *tensorSeg) mix(tau float64, out []float64, r []response) {
 	clear(out)
-	for g := range st.groups {
+	for g := range r {
 		level, slope := sg.level[g]+sg.slope[g]*tau, sg.slope[g]
-		mean += st.meanS[g]*level - st.meanW[g]*slope
-		for i, v := range st.steady[g] {
-			out[i] += v*level - st.creep[g][i]*slope
+		if slope == 0 {
+			for i, v := range r[g].s {
+				out[i] += v * level
+			}
+			continue
+		}
+		w := r[g].w
+		for i, v := range r[g].s {
+			out[i] += v*level - w[i]*slope
 		}
 	}
-	return mean
 }
 
-// ends finds the coldest and hottest place from the nodes in buf, going along the axis only where the nodes leave it open.
-func (f *tensor) ends(b *body, t float64) (low, high extreme) {
-	lo, hi := b.lowest()
-	var shot snapshot
-	at := func(node int, sign float64) extreme {
-		if b.settled(node, node, 0, 1, sign) {
-			return extreme{b.buf[node], coord{b.nodes.x[0][node]}}
-		}
-		if shot == nil {
-			shot = f.at(t)
-		}
-		return b.descend(shot, node, [3]int{node}, [3]int{1}, [3]bool{false, true, true}, sign)
+// restMean is the mean of what the media hold, tau after the start of a segment.
+func (sg *tensorSeg) restMean(tau float64) float64 {
+	sum := 0.0
+	for g, slope := range sg.slope {
+		sum += sg.step.meanS[g]*(sg.level[g]+slope*tau) - sg.step.meanW[g]*slope
 	}
-	low, high = at(lo, 1), at(hi, -1)
+	return sum
+}
+
+// ends finds the coldest and hottest place from the nodes, looking between them only where they leave it open.
+func (w *lineSampler) ends() (low, high extreme) {
+	b := w.b
+	lo, hi, turns := b.turning()
+	low, high = w.beside(lo, 1, &w.cold), w.beside(hi, -1, &w.hot)
+	if turns < 2 { // no third extreme: none that could rival
+		return low, high
+	}
 	reach := rivalShare * (b.buf[hi] - b.buf[lo])
 	if i := b.rival(lo, 1, reach, low.c); i >= 0 {
-		if e := at(i, 1); e.c < low.c-flatK {
-			low = e
+		x := w.cold
+		if e := w.beside(i, 1, &x); e.c < low.c-flatK {
+			low, w.cold = e, x
 		}
 	}
 	if i := b.rival(hi, -1, reach, high.c); i >= 0 {
-		if e := at(i, -1); e.c > high.c+flatK {
-			high = e
+		x := w.hot
+		if e := w.beside(i, -1, &x); e.c > high.c+flatK {
+			high, w.hot = e, x
 		}
 	}
 	return low, high
+}
+
+// turning gives the coldest and hottest node of one axis, the nearest to the centre of those that are as cold or hot, and how often the
+// field turns between rising and falling.
+func (b *body) turning() (lo, hi, turns int) {
+	cold, hot, before := b.buf[0], b.buf[0], b.buf[0]
+	rising, falling := false, false
+	for i, c := range b.buf {
+		if c < cold {
+			cold, lo = c, i
+		} else if c > hot {
+			hot, hi = c, i
+		}
+		switch d := c - before; {
+		case d > flatK:
+			if falling {
+				turns++
+			}
+			rising, falling = true, false
+		case d < -flatK:
+			if rising {
+				turns++
+			}
+			rising, falling = false, true
+		}
+		before = c
+	}
+	return b.nearest(lo, cold+flatK, 1), b.nearest(hi, hot-flatK, -1), turns
+}
+
+// nearest gives the node nearest to the centre that is not above level (sign 1) or not below it (-1); found is one.
+func (b *body) nearest(found int, level, sign float64) int {
+	for _, i := range b.order {
+		if i == found || sign*b.buf[i] <= sign*level {
+			return i
+		}
+	}
+	return found
+}
+
+// beside finds the extreme at or beside a node; sign 1 looks for the coldest. near is where it was found last, and is kept up to date.
+func (w *lineSampler) beside(node int, sign float64, near *float64) extreme {
+	b, xs := w.b, w.b.nodes.x[0]
+	e := extreme{b.buf[node], coord{xs[node]}}
+	lo, hi := max(node-1, 0), min(node+1, len(xs)-1)
+	if b.settled(node, node, 0, 1, sign) || math.Abs(b.buf[lo]-e.c) <= flatK && math.Abs(b.buf[hi]-e.c) <= flatK {
+		return e // the latter is flat: stay where the centre is nearest
+	}
+	w.polynomials()
+	v := valleyOf([3]float64{xs[lo], xs[node], xs[hi]}, [3]float64{sign * b.buf[lo], sign * b.buf[node], sign * b.buf[hi]})
+	if *near > v.lo && *near < v.hi {
+		v.start = *near
+	}
+	c, x := v.newton(w.f.axes[0].base, w.line, sign)
+	if sign*c < sign*e.c-1e-12 {
+		e.c, e.x[0] = c, x
+		*near = x
+	}
+	return e
+}
+
+// polynomials makes the field one sum of polynomials.
+func (w *lineSampler) polynomials() {
+	if w.lined {
+		return
+	}
+	w.lined = true
+	st := w.sg.step
+	if !w.restLined {
+		w.restLined = true
+		w.sg.mix(w.tau, w.restLine, st.lines)
+	}
+	copy(w.line, w.restLine)
+	addRows(w.line, st.ax[0].b, len(w.line), w.amp[:w.keep])
 }

@@ -71,7 +71,7 @@ func uniform(kind axisKind, radiusM, startC float64) *oneAxis {
 // run lets t seconds of a step pass with a film h (+Inf: held) at a medium that starts at mediumC and rises by riseKs K/s; food gives the
 // properties. It returns the modes and their amplitudes' deviation from the state that the medium would hold.
 func (o *oneAxis) run(food Properties, h, mediumC, riseKs, t float64) (s *axisStep, amplitude []float64) {
-	s = o.step(new(slab), food, film{group: -1}, film{u: h})
+	s = o.step(new(slab), new(slab), food, film{group: -1}, film{u: h})
 	amplitude = make([]float64, o.n)
 	o.c[0] -= mediumC
 	for i := range amplitude {

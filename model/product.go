@@ -11,7 +11,8 @@ type product struct {
 	start float64
 	steps []*productStep
 	now   productShot
-	mem   slab
+	mem   *slab // for what lives as long as the field
+	tmp   *slab // for what is needed within a call
 }
 
 type productStep struct {
@@ -62,8 +63,8 @@ func (t *productTerm) sizeK() float64 {
 	return size
 }
 
-func newProduct(axes [3]*axis, nd *nodes, startC float64) *product {
-	f := &product{axes: axes, nodes: nd, start: startC}
+func newProduct(axes [3]*axis, nd *nodes, startC float64, mem, tmp *slab) *product {
+	f := &product{axes: axes, nodes: nd, start: startC, mem: mem, tmp: tmp}
 	f.now.f = f
 	return f
 }
@@ -79,13 +80,14 @@ func (f *product) run(cs *chainStep) {
 	}
 	st.t1 = st.t0 + cs.durS
 	for a := range f.axes {
-		st.ax[a] = f.axes[a].step(&f.mem, cs.props, cs.lo[a], cs.up[a])
+		st.ax[a] = f.axes[a].step(f.mem, f.tmp, cs.props, cs.lo[a], cs.up[a])
 		st.e0[a] = st.ax[a].b[:f.axes[a].n]
 	}
 	if last != nil {
+		mark := f.tmp.free
 		var p [3][]float64
 		for a := range f.axes {
-			p[a] = project(&f.mem, f.axes[a].n, last.ax[a].b, st.ax[a].b)
+			p[a] = project(f.tmp, f.axes[a].n, last.ax[a].b, st.ax[a].b)
 		}
 		for _, old := range last.terms {
 			t := productTerm{weight: old.weight}
@@ -94,16 +96,16 @@ func (f *product) run(cs *chainStep) {
 				var e [maxDegrees]float64
 				keep := decays(last.ax[a].rate, last.t1-last.t0, e[:n])
 				t.x[a] = f.mem.take(n)
-				for i := range t.x[a] {
-					for j := 0; j < keep; j++ {
-						t.x[a][i] += p[a][i*n+j] * old.x[a][j] * e[j]
-					}
+				for j := range e[:keep] {
+					e[j] *= old.x[a][j]
 				}
+				addRows(t.x[a], p[a], n, e[:keep])
 			}
 			if t.sizeK() > fadedK {
 				st.terms = append(st.terms, t)
 			}
 		}
+		f.tmp.free = mark
 	}
 	if before != st.mediumC {
 		st.terms = append(st.terms, productTerm{weight: before - st.mediumC, x: st.e0})
@@ -196,7 +198,7 @@ func (s *productShot) grid(out []float64) {
 	f, st := s.f, s.st
 	if st.gridB[0] == nil {
 		for a := range f.axes {
-			st.gridB[a] = nodeModes(&f.mem, f.axes[a], f.nodes, a, st.ax[a].b)
+			st.gridB[a] = nodeModes(f.mem, f.axes[a], f.nodes, a, st.ax[a].b)
 		}
 	}
 	for i := range out {

@@ -28,7 +28,8 @@ func Solve(p Product, steps []Step, o Options) (*History, error) {
 	if o.ConductivityFactor == 0 {
 		o.ConductivityFactor = 1
 	}
-	s := &solver{product: &p, steps: steps, options: o}
+	s := &solver{product: &p, steps: steps, options: o, tmp: scratches.Get().(*scratch)}
+	defer scratches.Put(s.tmp)
 	s.layOut()
 	for more := 0; ; more++ {
 		h := s.run(more)
@@ -55,6 +56,7 @@ type solver struct {
 	sharp   [3]bool     // a film on the axis so strong that the surface all but jumps
 	chain   []*chainStep
 	main    field
+	tmp     *scratch    // for what does not outlive the solution
 	refused cell.Errors // found while solving
 }
 
@@ -174,12 +176,8 @@ func (s *solver) grid(degrees func(a int) int, coarse bool) (axes [3]*axis, nd *
 	nd = &nodes{}
 	for a := range axes {
 		axes[a] = &axis{base: baseOf(s.kinds[a], degrees(a)), radiusM: s.radii[a], lower: s.faces[a][0], upper: s.faces[a][1]}
-		nd.x[a] = nodesOf(s.kinds[a], s.used, axes[a].n, coarse)
-		n := axes[a].n
-		nd.phi[a] = make([]float64, n*len(nd.x[a]))
-		for g, x := range nd.x[a] {
-			axes[a].values(x, nd.phi[a][g*n:g*n+n], nil)
-		}
+		at := axes[a].sitesFor(s.used, coarse)
+		nd.x[a], nd.phi[a] = at.x, at.phi
 	}
 	return axes, nd
 }
@@ -251,8 +249,8 @@ func (s *solver) run(more int) *History {
 	return h
 }
 
-// build runs the chain, or only its last step if a field that holds the others is given.
-func (s *solver) build(axes [3]*axis, nd *nodes, f field) field {
+// build runs the chain, or only its last step if a field that holds the others is given; a new field lies in mem.
+func (s *solver) build(axes [3]*axis, nd *nodes, f field, mem *slab) field {
 	split := separates(axes, s.chain, len(s.steps))
 	if p, ok := f.(*product); ok && split {
 		p.run(s.chain[len(s.chain)-1])
@@ -263,13 +261,13 @@ func (s *solver) build(axes [3]*axis, nd *nodes, f field) field {
 		return t
 	}
 	if split {
-		p := newProduct(axes, nd, s.product.StartC)
+		p := newProduct(axes, nd, s.product.StartC, mem, &s.tmp.call)
 		for _, cs := range s.chain {
 			p.run(cs)
 		}
 		return p
 	}
-	t := newTensor(axes, nd, s.product.StartC)
+	t := newTensor(axes, nd, s.product.StartC, mem, &s.tmp.call)
 	for _, cs := range s.chain {
 		t.run(cs)
 	}
@@ -284,7 +282,7 @@ func (s *solver) step(h *History, span *Span, axes [3]*axis, nd *nodes, lo, hi f
 	for pass := 0; ; pass++ {
 		cs := s.ready(h.body, span, axes, nd, [2]float64{lo, hi}, within)
 		s.chain = append(s.chain, cs)
-		s.main = s.build(axes, nd, s.main)
+		s.main = s.build(axes, nd, s.main, &slab{})
 		h.field = s.main
 		if st.UntilC == nil {
 			return cs
@@ -348,7 +346,7 @@ func (s *solver) ready(body *body, span *Span, axes [3]*axis, nd *nodes, food [2
 			return cs
 		}
 		s.chain = append(s.chain, cs)
-		f := s.build(axes, nd, s.main)
+		f := s.build(axes, nd, s.main, &slab{})
 		s.chain = s.chain[:len(s.chain)-1]
 		cold, hot = food[0], food[1]
 		for k := 1; k <= 8; k++ {
@@ -603,22 +601,22 @@ func (s *solver) estimate(h *History, more int) {
 		return
 	}
 	axes, nd := s.grid(func(a int) int { return s.fewer(a, more) }, true)
-	low := s.build(axes, nd, nil)
+	s.tmp.again()
+	low := s.build(axes, nd, nil, &s.tmp.field)
 	_, own := s.grid(func(a int) int { return s.degrees(a, more) }, true)
 	fine := s.main
-	swap := func(n *nodes) *nodes {
-		var old *nodes
+	swap := func(n *nodes, m *slab) (was *nodes, mem *slab) {
 		switch f := fine.(type) {
 		case *tensor:
-			old, f.nodes = f.nodes, n
+			was, mem, f.nodes, f.mem = f.nodes, f.mem, n, m
 			f.forget()
 		case *product:
-			old, f.nodes = f.nodes, n
+			was, mem, f.nodes, f.mem = f.nodes, f.mem, n, m
 			f.forget()
 		}
-		return old
+		return was, mem
 	}
-	wide := swap(own)
+	wide, mem := swap(own, &s.tmp.field)
 	a, b := make([]float64, nd.count()), make([]float64, nd.count())
 	worst := 0.0
 	for i := range h.Spans {
@@ -637,7 +635,7 @@ func (s *solver) estimate(h *History, more int) {
 			}
 		}
 	}
-	swap(wide)
+	swap(wide, mem)
 	h.ErrorK = math.Max(worst/fewerWorse, 1e-5)
 	for _, cs := range s.chain {
 		if len(cs.knots) > 1 {
@@ -682,7 +680,7 @@ const fewerWorse = 2
 // forget drops what was made for the nodes.
 func (f *tensor) forget() {
 	for _, st := range f.steps {
-		st.gridB, st.steady, st.creep = [3][]float64{}, nil, nil
+		st.gridB, st.held, st.lines = [3][]float64{}, st.held[:0], st.lines[:0]
 	}
 }
 

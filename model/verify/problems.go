@@ -24,12 +24,12 @@ func textbookCases() []Case {
 	apple := oneFood(model.Sphere, 0.045, diffusing(0.418, 1.3e-7), 20, step("freezer", 3600, exposure(8, -15)))
 	roast := oneFood(model.Sphere, 0.0710, model.Properties{KWmK: 0.5, RhoKgM3: 1000, CJkgK: 4000}, 20, step("oven", 4*3600, exposure(18, 163)))
 	return []Case{
-		{"steak of 20 mm chilled until its surface is at 2 °C", Textbook, "Cengel, Heat Transfer, problem 11-44 with the publisher's solution: 93.1 min", "min", 93.1, 0.1, in(60, steak.passes(model.Place{UpM: 0.01}, 2))},
-		{"beef carcass as a cylinder of 240 mm: centre down to 4 °C (no freezing in the problem)", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, 6th ed., problem 4-65: 12.2 h", "h", 12.2, 0.1, in(3600, carcass.passes(model.Place{}, 4))},
-		{"egg as a sphere of 50 mm: centre up to 70 °C", Textbook, "Cengel, Heat Transfer, Example 4-3: 14.4 min with the coefficients of its table", "min", 14.4, 0.1, in(60, egg.passes(model.Place{}, 70))},
-		{"apple of 90 mm after an hour in the freezer: centre", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, problem of the apple: 11.2 °C by the one-term solution", "°C", 11.2, 0.15, apple.at(model.Place{}, 3600)},
-		{"apple of 90 mm after an hour in the freezer: surface", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, problem of the apple: 2.7 °C by the one-term solution", "°C", 2.7, 0.15, apple.at(model.Place{UpM: 0.045}, 3600)},
-		{"roast of 1.5 kg as a sphere: centre up to 77 °C", Textbook, "Kreith, Principles of Heat Transfer, problem of the roast: 134 min in its solution", "min", 134, 1.34, in(60, roast.passes(model.Place{}, 77))},
+		{"steak of 20 mm chilled until its surface is at 2 °C", Textbook, "Cengel, Heat Transfer, problem 11-44 with the publisher's solution: 93.1 min", "min", 93.1, 0.1, in(60, steak.passes(model.Place{UpM: 0.01}, 2)), steak},
+		{"beef carcass as a cylinder of 240 mm: centre down to 4 °C (no freezing in the problem)", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, 6th ed., problem 4-65: 12.2 h", "h", 12.2, 0.1, in(3600, carcass.passes(model.Place{}, 4)), carcass},
+		{"egg as a sphere of 50 mm: centre up to 70 °C", Textbook, "Cengel, Heat Transfer, Example 4-3: 14.4 min with the coefficients of its table", "min", 14.4, 0.1, in(60, egg.passes(model.Place{}, 70)), egg},
+		{"apple of 90 mm after an hour in the freezer: centre", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, problem of the apple: 11.2 °C by the one-term solution", "°C", 11.2, 0.15, apple.at(model.Place{}, 3600), apple},
+		{"apple of 90 mm after an hour in the freezer: surface", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, problem of the apple: 2.7 °C by the one-term solution", "°C", 2.7, 0.15, apple.at(model.Place{UpM: 0.045}, 3600), apple},
+		{"roast of 1.5 kg as a sphere: centre up to 77 °C", Textbook, "Kreith, Principles of Heat Transfer, problem of the roast: 134 min in its solution", "min", 134, 1.34, in(60, roast.passes(model.Place{}, 77)), roast},
 	}
 }
 
@@ -50,11 +50,11 @@ func propertyCases() []Case {
 	heat := func(p model.Properties) float64 { return p.CJkgK }
 	density := func(p model.Properties) float64 { return p.RhoKgM3 }
 	return []Case{
-		{"water at 20 °C: specific heat", Properties, source, "J/(kg·K)", 4176.57, 0.01, of(food.Composition{WaterPc: 100}, 20, heat)},
-		{"meat at 70 °C: conductivity", Properties, source, "W/(m·K)", 0.524977, 1e-6, of(meat, 70, conductivity)},
-		{"meat at 5 °C: density", Properties, source, "kg/m³", 1053.2902, 1e-3, of(meat, 5, density)},
-		{"starchy food at 20 °C: conductivity", Properties, source, "W/(m·K)", 0.492883, 1e-6, of(starchy, 20, conductivity)},
-		{"starchy food at 70 °C: specific heat", Properties, source, "J/(kg·K)", 3457.177, 1e-2, of(starchy, 70, heat)},
+		{"water at 20 °C: specific heat", Properties, source, "J/(kg·K)", 4176.57, 0.01, of(food.Composition{WaterPc: 100}, 20, heat), Problem{}},
+		{"meat at 70 °C: conductivity", Properties, source, "W/(m·K)", 0.524977, 1e-6, of(meat, 70, conductivity), Problem{}},
+		{"meat at 5 °C: density", Properties, source, "kg/m³", 1053.2902, 1e-3, of(meat, 5, density), Problem{}},
+		{"starchy food at 20 °C: conductivity", Properties, source, "W/(m·K)", 0.492883, 1e-6, of(starchy, 20, conductivity), Problem{}},
+		{"starchy food at 70 °C: specific heat", Properties, source, "J/(kg·K)", 3457.177, 1e-2, of(starchy, 70, heat), Problem{}},
 	}
 }
 
@@ -63,7 +63,7 @@ func practiceCases() []Case {
 	// of boiling water is the lowest of the published range.
 	egg, _ := food.Named("Egg, whole, hard-boiled") // without it the case is an error: no food is given
 	p := Problem{"egg", model.Product{Name: "egg", Shape: model.Sphere, Size: model.Size{DiameterM: 0.042}, Food: egg, StartC: 20}, []model.Step{step("boil", 1800, exposure(2500, 100))}}
-	return []Case{{"hen's egg in boiling water, set to the centre (65 °C)", Practice, "common practice, no source: roughly 7 min", "min", 7, 2, in(60, p.passes(model.Place{}, 65))}}
+	return []Case{{"hen's egg in boiling water, set to the centre (65 °C)", Practice, "common practice, no source: roughly 7 min", "min", 7, 2, in(60, p.passes(model.Place{}, 65)), p}}
 }
 
 func measuredCases() []Case {
@@ -84,7 +84,7 @@ func measuredCases() []Case {
 		}
 	}
 	return []Case{
-		{"rolled beef forequarter, 110 mm, 2.7 kg, cooked to 75 °C, in air of 0 °C: centre from 70 to 10 °C", Measured, source, "h", 5.1, 0.51, between(70, 10)},
-		{"rolled beef forequarter, 110 mm, 2.7 kg, cooked to 75 °C, in air of 0 °C: centre from 50 to 10 °C", Measured, source, "h", 4.4, 0.44, between(50, 10)},
+		{"rolled beef forequarter, 110 mm, 2.7 kg, cooked to 75 °C, in air of 0 °C: centre from 70 to 10 °C", Measured, source, "h", 5.1, 0.51, between(70, 10), p},
+		{"rolled beef forequarter, 110 mm, 2.7 kg, cooked to 75 °C, in air of 0 °C: centre from 50 to 10 °C", Measured, source, "h", 4.4, 0.44, between(50, 10), p},
 	}
 }

@@ -99,15 +99,15 @@ func referenceCases() []Case {
 	}
 	point := func(id, point string, t, want float64) Case {
 		r := by[id]
-		return Case{id + ", " + r.Name + ": " + point + " after " + duration(t), Reference, twoMethods, "°C", want, r.AllowK, r.at(r.Points[point], t)}
+		return Case{id + ", " + r.Name + ": " + point + " after " + duration(t), Reference, twoMethods, "°C", want, r.AllowK, r.at(r.Points[point], t), r.Problem}
 	}
 	sampled := func(id, what string, t, want float64, of func(*model.Samples, int) float64) Case {
 		r := by[id]
-		return Case{id + ", " + r.Name + ": " + what + " after " + duration(t), Reference, twoMethods, "°C", want, r.EdgeK, r.sample(t, of)}
+		return Case{id + ", " + r.Name + ": " + what + " after " + duration(t), Reference, twoMethods, "°C", want, r.EdgeK, r.sample(t, of), r.Problem}
 	}
 	place := func(id, what string, t, wantMM float64, of func(*model.Samples, int) float64) Case {
 		r := by[id]
-		return Case{id + ", " + r.Name + ": height of the " + what + " above the middle after " + duration(t), Reference, twoMethods, "mm", wantMM, 1, r.sample(t, of)}
+		return Case{id + ", " + r.Name + ": height of the " + what + " above the middle after " + duration(t), Reference, twoMethods, "mm", wantMM, 1, r.sample(t, of), r.Problem}
 	}
 	return []Case{
 		point("A", "surface", 600, 60.70556),

@@ -13,6 +13,7 @@ type Case struct {
 	Expected  float64
 	Allowance float64 // the largest difference that passes
 	Got       func() (float64, error)
+	Problem   Problem // what is solved; without a shape where the case is about properties alone
 }
 
 // The areas, in the order of the list.
