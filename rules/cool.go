@@ -45,13 +45,7 @@ func (v *view) clockStart(p path, w window, t tilt) (start float64, ok, open boo
 		return w.clock, true, false
 	}
 	from := v.l.crossedC()
-	q := p.in(w.interval)
-	top := 0
-	for i := range q.c {
-		if q.c[i] > q.c[top] {
-			top = i
-		}
-	}
+	q, top := p.in(w.interval).peaked(from - t.errK)
 	if q.c[top] <= from+sameK && !(t.edge && q.c[top] >= from-t.errK-sameK) {
 		return 0, false, false
 	}

@@ -119,9 +119,20 @@ func (p path) polish(i int, sign float64) (at, c float64) {
 	const g = 0.6180339887498949
 	x, y := b-g*(b-a), a+g*(b-a)
 	fx, fy := sign*p.at(x), sign*p.at(y)
-	for n := 0; n < 30 && b-a > 0.5; n++ {
-		if math.Abs(fx-fy) < 1e-7 {
-			break
+	for n := 0; n < 40 && b-a > 0.02; n++ {
+		if math.Abs(fx-fy) < 1e-7 { // on either side of it, or in the flat
+			m := (x + y) / 2
+			fm := sign * p.at(m)
+			if fm > sign*c {
+				at, c = m, sign*fm
+			}
+			if fm-fx < 1e-7 {
+				break
+			}
+			a, b = x, y
+			x, y = b-g*(b-a), a+g*(b-a)
+			fx, fy = sign*p.at(x), sign*p.at(y)
+			continue
 		}
 		if fx > fy {
 			b, y, fy = y, x, fx

@@ -74,6 +74,7 @@ type candidate struct {
 	surface bool
 	path    path
 	nominal outcome
+	edge    bool // at the edge of the places where the clock started
 }
 
 // judgePlaces answers a question about every place of the limit and makes the finding of the least favourable one.
@@ -96,6 +97,9 @@ func (v *view) judgePlaces(q question) Finding {
 		f.Place, f.PlaceName = &place, s.name
 		if s.name == "" || s.surfaceOnly {
 			f.PlaceName = v.placeName(place)
+		}
+		if cs[best].edge && f.Verdict != NotApplicable {
+			f.Notes = append(f.Notes, say("note edge", holes{"start": v.l.startWords()}))
 		}
 	} else {
 		f.PlaceName = s.name
@@ -214,7 +218,7 @@ func (v *view) candidates(s scope, q question) []candidate {
 			}
 		}
 		path := v.c.path(p)
-		cs = append(cs, candidate{p, surface, path, q.measure(path, tilt{})})
+		cs = append(cs, candidate{place: p, surface: surface, path: path, nominal: q.measure(path, tilt{})})
 	}
 	for n, i := range picks {
 		add(v.c.spots[i].Place, v.c.spots[i].Surface)
@@ -238,57 +242,15 @@ func (v *view) candidates(s scope, q question) []candidate {
 			return offset - o.bad
 		})
 		add(p, v.c.spots[i].Surface && s.surfaceOnly)
-		for _, p := range v.edges(p, q, s.surfaceOnly) {
-			add(p, s.surfaceOnly)
-		}
+	}
+	inner := len(cs)
+	for _, p := range v.edges(s, q) {
+		add(p, s.surfaceOnly)
+	}
+	for i := inner; i < len(cs); i++ {
+		cs[i].edge = true
 	}
 	return cs
-}
-
-// edges finds, along each axis from the least favourable place, where the limit stops to apply: the clock of a place that only
-// just was warm enough starts latest or runs longest, so what decides may lie at that very edge, between two spots.
-func (v *view) edges(from model.Place, q question, surfaceOnly bool) []model.Place {
-	counts := func(p model.Place) bool { return q.measure(v.c.path(p), tilt{rank: true}).verdict != NotApplicable }
-	if !v.patchy || !v.l.clocked() || !counts(from) {
-		return nil
-	}
-	var found []model.Place
-	for k := range v.c.marks {
-		for _, way := range []int{-1, 1} {
-			to, ok := v.c.beside(from, k, way)
-			if !ok || surfaceOnly && !v.onSurface(to) || counts(to) {
-				continue
-			}
-			in, out := from, to
-			for n := 0; n < 12; n++ {
-				mid := model.Place{UpM: (in.UpM + out.UpM) / 2, AcrossM: (in.AcrossM + out.AcrossM) / 2, AlongM: (in.AlongM + out.AlongM) / 2}
-				if counts(mid) {
-					in = mid
-				} else {
-					out = mid
-				}
-			}
-			found = append(found, v.inside(q, in, from))
-		}
-	}
-	return found
-}
-
-// probeM is how near to an edge two places cannot be told apart: no probe is thinner, m (common practice, no source).
-const probeM = 4e-4
-
-// inside is the place a probe's breadth from an edge towards another place; the edge itself where the verdict differs there.
-func (v *view) inside(q question, edge, to model.Place) model.Place {
-	d := math.Hypot(math.Hypot(to.UpM-edge.UpM, to.AcrossM-edge.AcrossM), to.AlongM-edge.AlongM)
-	w := math.Min(1, probeM/math.Max(d, 1e-9))
-	p := model.Place{UpM: edge.UpM + w*(to.UpM-edge.UpM), AcrossM: edge.AcrossM + w*(to.AcrossM-edge.AcrossM), AlongM: edge.AlongM + w*(to.AlongM-edge.AlongM)}
-	for _, errK := range []float64{0, v.errK} {
-		t := tilt{errK: errK, rank: true}
-		if q.measure(v.c.path(p), t).verdict != q.measure(v.c.path(edge), t).verdict {
-			return edge
-		}
-	}
-	return p
 }
 
 // clocked tells whether the limit's clock starts at a crossing, so that it may not apply to some places.

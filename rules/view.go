@@ -19,8 +19,8 @@ type courses struct {
 	end   float64
 	exact map[model.Place]path
 	light map[int][]float64 // of a spot: the instants that a local search looks at
-	size  [3]interval       // range of Up, Across, Along over the spots, m
-	marks [3][]float64      // the spots' coordinates on each axis, rising, m
+	pairs []neighbour       // nil until asked for
+	marks [3][]float64      // the spots' coordinates on each axis, rising, m; filled with pairs
 	air   *path
 	damp  *path
 
@@ -86,36 +86,7 @@ func newCourses(h *model.History) *courses {
 		c.end = c.times[len(c.times)-1]
 	}
 	c.insert(c.bounds())
-	for i, s := range c.spots {
-		for k, x := range [3]float64{s.UpM, s.AcrossM, s.AlongM} {
-			if i == 0 {
-				c.size[k] = interval{x, x}
-			}
-			c.size[k] = interval{math.Min(c.size[k].a, x), math.Max(c.size[k].b, x)}
-			if n := sort.SearchFloat64s(c.marks[k], x); n == len(c.marks[k]) || c.marks[k][n] != x {
-				c.marks[k] = append(c.marks[k], x)
-				sort.Float64s(c.marks[k])
-			}
-		}
-	}
 	return c
-}
-
-// beside is the place on the next mark of an axis; ok is false at the end of it.
-func (c *courses) beside(p model.Place, axis, way int) (next model.Place, ok bool) {
-	x := [3]float64{p.UpM, p.AcrossM, p.AlongM}
-	marks := c.marks[axis]
-	n := sort.SearchFloat64s(marks, x[axis])
-	if way < 0 {
-		n--
-	} else if n < len(marks) && marks[n] == x[axis] {
-		n++
-	}
-	if n < 0 || n >= len(marks) {
-		return p, false
-	}
-	x[axis] = marks[n]
-	return model.Place{UpM: x[0], AcrossM: x[1], AlongM: x[2]}, true
 }
 
 // insert makes the given times instants of the scan, by straight lines.
@@ -128,16 +99,8 @@ func (c *courses) insert(times []float64) {
 	if !missing {
 		return
 	}
-	all := append(append([]float64(nil), c.times...), times...)
-	sort.Float64s(all)
-	n := 0
-	for i, t := range all {
-		if i == 0 || t > all[n-1] {
-			all[n] = t
-			n++
-		}
-	}
-	all = all[:n]
+	all := rising(append(append([]float64(nil), c.times...), times...))
+	n := len(all)
 	rows := make([][]float64, len(c.rows))
 	for s := range c.rows {
 		p := path{t: c.times, c: c.rows[s]}
@@ -450,17 +413,6 @@ func (v *view) placeName(p model.Place) string {
 		return fmt.Sprintf("%.0f mm above the centre", 1000*p.UpM)
 	}
 	return v.h.Product.Where(p)
-}
-
-// onSurface tells whether a place lies on the outside of the spots.
-func (v *view) onSurface(p model.Place) bool {
-	x := [3]float64{p.UpM, p.AcrossM, p.AlongM}
-	for k, s := range v.c.size {
-		if s.b > s.a && (math.Abs(x[k]-s.b) < 1e-6 || s.a < 0 && math.Abs(x[k]-s.a) < 1e-6) {
-			return true
-		}
-	}
-	return false
 }
 
 // near tells whether two places are the same to a hundredth of a millimetre.

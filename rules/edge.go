@@ -1,0 +1,273 @@
+package rules
+
+import (
+	"math"
+	"sort"
+
+	"slowpoint/model"
+)
+
+// A clock that starts at a crossing runs only at the places that were ever above the temperature crossed: part of the food, with
+// an edge. A place just within that edge was there for a moment only and starts its clock at its peak, before its neighbours
+// further out fall to the crossing. So the time taken grows towards the edge, with an infinite slope, and its supremum over the
+// places that count is the limit at the edge. That supremum is the value: the place named, its value and its verdict are those of
+// a place whose peak is edgeK above the crossing, as near to the limit as the numbers go.
+
+// edgeK is how far the peak of a place at an edge lies above the crossing, within half as much, K: what the search for a peak can
+// tell apart. For a chill of an hour it shortens the time by about a second.
+const edgeK = 1e-5
+
+// mostEdges is how many edges of a window are followed exactly: the worst by a first look at all.
+const mostEdges = 3
+
+// edge is a crossing of the edge between two neighbours along an axis: one counts in a window, the other does not.
+type edge struct {
+	in, out coordinates
+	axis    int
+	level   float64 // the peak at the edge, °C
+	t       tilt
+	w       window
+	first   outcome // of the scanned courses, blended so that the peak just counts
+}
+
+// coordinates are Up, Across and Along of a place, m.
+type coordinates [3]float64
+
+func coordinatesOf(p model.Place) coordinates { return coordinates{p.UpM, p.AcrossM, p.AlongM} }
+func (x coordinates) place() model.Place {
+	return model.Place{UpM: x[0], AcrossM: x[1], AlongM: x[2]}
+}
+
+// edges finds places at the edges of those that count for a clock, in each window: along the axes between neighbouring spots.
+func (v *view) edges(s scope, q question) []model.Place {
+	if !v.l.clocked() || v.h.Recorded || len(s.spots) == 0 {
+		return nil
+	}
+	levels := []float64{v.l.crossedC()}
+	if v.errK > 0 { // the unfavourable reading counts more places
+		levels = append(levels, levels[0]-v.errK)
+	}
+	within := make([]bool, len(v.c.spots))
+	for _, i := range s.spots {
+		within[i] = true
+	}
+	var found []model.Place
+	for _, w := range v.windows() {
+		top := make([]float64, len(v.c.spots))
+		for _, i := range s.spots {
+			_, top[i] = path{t: v.c.times, c: v.c.rows[i]}.most(w.interval, 1)
+		}
+		for n, level := range levels {
+			var es []edge
+			t := tilt{rank: true, errK: v.errK * float64(n), edge: n > 0}
+			for _, pair := range v.c.neighbours() {
+				i, k := pair.a, pair.b
+				if top[i] < top[k] {
+					i, k = k, i
+				}
+				if within[i] && within[k] && top[i] > level && top[k] <= level {
+					e := edge{in: coordinatesOf(v.c.spots[i].Place), out: coordinatesOf(v.c.spots[k].Place), axis: pair.axis, level: level, t: t, w: w}
+					e.first = q.measure(v.c.blend(i, k, (level-top[k])/(top[i]-top[k]), w, level), t)
+					es = append(es, e)
+				}
+			}
+			sort.SliceStable(es, func(a, b int) bool { return worse(es[a].first, es[b].first) })
+			for _, e := range es[:min(len(es), mostEdges)] {
+				if x, ok := v.follow(e, e.in); ok {
+					found = append(found, v.slide(e, x, q, s.surfaceOnly).place())
+				}
+			}
+		}
+	}
+	return found
+}
+
+// blend mixes the scanned courses of two spots (share of the first), moved so that the peak in a window just exceeds a level.
+func (c *courses) blend(i, k int, share float64, w window, level float64) path {
+	p := path{t: c.times, c: make([]float64, len(c.times))}
+	for n := range p.c {
+		p.c[n] = c.rows[k][n] + share*(c.rows[i][n]-c.rows[k][n])
+	}
+	_, top := p.most(w.interval, 1)
+	for n := range p.c {
+		p.c[n] += level + edgeK - top
+	}
+	return p
+}
+
+// follow finds the place of an edge on the line along its axis through a place: where the peak in the window is edgeK above the
+// level, by regula falsi (Illinois). It looks further out on either side where the two neighbours do not bracket the edge there;
+// ok is false where the line does not cross it within the food.
+func (v *view) follow(e edge, through coordinates) (x coordinates, ok bool) {
+	out := make([]float64, len(v.c.times))
+	on := func(along float64) coordinates {
+		through[e.axis] = along
+		return through
+	}
+	over := func(along float64) float64 {
+		p := on(along).place()
+		v.h.Course(p, v.c.times, out)
+		_, top := path{t: v.c.times, c: out, at: func(t float64) float64 { return v.h.At(p, t) }}.most(e.w.interval, 1)
+		return top - e.level - edgeK
+	}
+	a, b := e.in[e.axis], e.out[e.axis]
+	fa, fb := over(a), over(b)
+	for n := 0; n < 4 && (fa <= 0 || fb > 0); n++ {
+		if d := b - a; fa <= 0 {
+			b, fb = a, fa
+			a = v.c.inside(e.axis, a-d)
+			fa = over(a)
+		} else {
+			a, fa = b, fb
+			b = v.c.inside(e.axis, b+d)
+			fb = over(b)
+		}
+	}
+	if fa <= 0 || fb > 0 {
+		return x, false
+	}
+	for n, side := 0, 0; n < 60 && math.Abs(b-a) > 1e-12; n++ {
+		m := a + (b-a)*fa/(fa-fb)
+		f := over(m)
+		if math.Abs(f) < edgeK/2 {
+			return on(m), true
+		}
+		if f > 0 {
+			if a, fa = m, f; side < 0 {
+				fb /= 2
+			}
+			side = -1
+		} else {
+			if b, fb = m, f; side > 0 {
+				fa /= 2
+			}
+			side = 1
+		}
+	}
+	return on(a), true
+}
+
+// inside is the coordinate within the food that is nearest to one on an axis.
+func (c *courses) inside(axis int, along float64) float64 {
+	marks := c.marks[axis]
+	return math.Max(marks[0], math.Min(marks[len(marks)-1], along))
+}
+
+// slide moves along an edge, from a place on it, to where the limit is least favourable: a parabola over each of the other axes,
+// finer each time.
+func (v *view) slide(e edge, x coordinates, q question, surfaceOnly bool) coordinates {
+	if n := len(v.c.marks[0]) * len(v.c.marks[1]) * len(v.c.marks[2]); n != len(v.c.spots) {
+		return x // no grid: its outline bends
+	}
+	score := func(x coordinates) float64 { return q.measure(v.c.path(x.place()), e.t).bad }
+	for axis, marks := range v.c.marks {
+		last := len(marks) - 1
+		if axis == e.axis || last == 0 || surfaceOnly && (x[axis] == marks[last] || x[axis] == marks[0] && marks[0] < 0) {
+			continue
+		}
+		n := min(max(sort.SearchFloat64s(marks, x[axis]), 1), last)
+		spacing := marks[n] - marks[n-1]
+		d, best := spacing/2, score(x)
+		for d > spacing/20 {
+			at, here := x, best
+			try := func(along float64) float64 {
+				y := at
+				if y[axis] = v.c.inside(axis, along); y[axis] == at[axis] {
+					return math.NaN()
+				}
+				y, ok := v.follow(e, y)
+				if !ok {
+					return math.NaN()
+				}
+				s := score(y)
+				if s > best {
+					best, x = s, y
+				}
+				return s
+			}
+			left, right := try(at[axis]-d), try(at[axis]+d)
+			if bend := left + right - 2*here; bend < 0 && at[axis]-d >= marks[0] && at[axis]+d <= marks[last] {
+				try(at[axis] + d/2*(left-right)/bend)
+			}
+			if best <= here+1e-3*math.Abs(here) {
+				d /= 3
+			}
+		}
+	}
+	return x
+}
+
+// neighbour is a pair of spots next to each other along one axis.
+type neighbour struct{ a, b, axis int }
+
+// neighbours lists the pairs of neighbours and fills the marks.
+func (c *courses) neighbours() []neighbour {
+	if c.pairs != nil {
+		return c.pairs
+	}
+	c.pairs = []neighbour{}
+	order := make([]int, len(c.spots))
+	for axis := range c.marks {
+		key := func(i int) coordinates { // the two other coordinates first
+			x := coordinatesOf(c.spots[i].Place)
+			return coordinates{x[(axis+1)%3], x[(axis+2)%3], x[axis]}
+		}
+		for i, s := range c.spots {
+			order[i] = i
+			c.marks[axis] = append(c.marks[axis], coordinatesOf(s.Place)[axis])
+		}
+		c.marks[axis] = rising(c.marks[axis])
+		sort.SliceStable(order, func(a, b int) bool {
+			x, y := key(order[a]), key(order[b])
+			for n := range x {
+				if x[n] != y[n] {
+					return x[n] < y[n]
+				}
+			}
+			return false
+		})
+		for n := 1; n < len(order); n++ {
+			x, y := key(order[n-1]), key(order[n])
+			if x[0] == y[0] && x[1] == y[1] && x[2] != y[2] {
+				c.pairs = append(c.pairs, neighbour{order[n-1], order[n], axis})
+			}
+		}
+	}
+	return c.pairs
+}
+
+// rising sorts numbers and drops those that come again.
+func rising(xs []float64) []float64 {
+	sort.Float64s(xs)
+	n := 0
+	for i, x := range xs {
+		if i == 0 || x > xs[n-1] {
+			xs[n] = x
+			n++
+		}
+	}
+	return xs[:n]
+}
+
+// peaked gives the highest knot of a path; where it lies near a level, the true peak beside it is made a knot first.
+func (p path) peaked(level float64) (path, int) {
+	top := 0
+	for i := range p.c {
+		if p.c[i] > p.c[top] {
+			top = i
+		}
+	}
+	if p.at == nil || math.Abs(p.c[top]-level) > nearK {
+		return p, top
+	}
+	at, c := p.polish(top, 1)
+	if c <= p.c[top] {
+		return p, top
+	}
+	k := sort.SearchFloat64s(p.t, at)
+	return path{
+		t:  append(append(append(make([]float64, 0, len(p.t)+1), p.t[:k]...), at), p.t[k:]...),
+		c:  append(append(append(make([]float64, 0, len(p.t)+1), p.c[:k]...), c), p.c[k:]...),
+		at: p.at,
+	}, k
+}
