@@ -2,6 +2,7 @@ package report
 
 import (
 	"math"
+	"slices"
 	"strings"
 
 	"slowpoint/model"
@@ -15,7 +16,8 @@ func (x *sheet) basis() {
 	d.heading(say("basis title"), 0, 30)
 	d.heading(say("factors title"), 1, 25)
 	d.text(say("factors note"))
-	d.table([]col{{title: say("col factor"), wide: 38, bold: true}, {title: say("col used"), wide: 62}, {title: say("col from"), wide: 80}}, x.factors(), small)
+	rows := x.factors()
+	d.grouped([]col{{title: say("col factor"), wide: 32, bold: true}, {title: say("col used"), wide: 78}, {title: say("col from"), wide: 70}}, rows, small, func(i int) bool { return i+1 < len(rows) && rows[i+1][0] != "" })
 	d.heading(say("method title"), 1, 20)
 	if p.History != nil {
 		d.text(say("method", p.History.Method))
@@ -28,25 +30,7 @@ func (x *sheet) basis() {
 		d.text(x.lowSentence())
 	}
 	d.text(say("rounding"))
-	d.heading(say("known title"), 1, 25)
-	if len(h.Known) == 0 {
-		d.text(say("known none"))
-		return
-	}
-	d.text(say("known note"))
-	var rows [][]string
-	for i, k := range h.Known {
-		ok := say("known bad")
-		if k.OK {
-			ok = say("known good")
-		}
-		if i == 0 || k.Source != h.Known[i-1].Source {
-			rows = append(rows, []string{say("known source", k.Source)})
-		}
-		rows = append(rows, []string{k.Name, significant(k.Expected) + " " + k.Unit, significant(k.Got) + " " + k.Unit, "± " + significant(k.Allowance) + " " + k.Unit, ok})
-	}
-	d.grouped([]col{{title: say("col case"), wide: 66}, {title: say("col expected"), wide: 32}, {title: say("col got"), wide: 32},
-		{title: say("col allowance"), wide: 32}, {title: say("col within"), wide: 18}}, rows, small, func(i int) bool { return i+1 < len(rows) && len(rows[i+1]) == 1 })
+	x.knownAnswers()
 }
 
 // significant writes a number with about six digits.
@@ -128,10 +112,11 @@ func (x *sheet) spanFactors(sp *model.Span, add func(a, b, c string)) {
 	case sp.Reached != nil && s.UntilC != nil:
 		end = say("factor until not", end, h.stated(*s.UntilC))
 	}
-	add(what, say("factor lasts", end), s.At.String())
-	x.exposure(what, &s.Exposure, "", add)
+	add(what, joined(say("factor lasts", end), x.exposure(&s.Exposure)), s.At.String())
 	for i := range s.Faces {
-		x.exposure(what, &s.Faces[i].Exposure, s.Faces[i].Face.Name, add)
+		if words := x.exposure(&s.Faces[i].Exposure); words != "" {
+			add(what, s.Faces[i].Face.Name+": "+words, s.Faces[i].At.String())
+		}
 	}
 	for _, f := range sp.Films {
 		face := ""
@@ -165,16 +150,13 @@ func (x *sheet) propsAt(sp *model.Span) string {
 	return say("props at", x.head.temperature(sp.PropsAtC, nearest))
 }
 
-// exposure is a row about the surroundings of a step or face.
-func (x *sheet) exposure(what string, e *model.Exposure, face string, add func(a, b, c string)) {
+// exposure is the surroundings of a step or face in words; "" if there are none.
+func (x *sheet) exposure(e *model.Exposure) string {
 	h := x.head
 	if e.Surface == nil {
-		return
+		return ""
 	}
 	s := []string{e.Surface.Name}
-	if face != "" {
-		s[0] = face + ": " + s[0]
-	}
 	if n := len(e.Medium.C); n > 0 {
 		kind := say("set-point")
 		if e.Measured {
@@ -211,7 +193,7 @@ func (x *sheet) exposure(what string, e *model.Exposure, face string, add func(a
 	if e.WrapM2KW != nil {
 		s = append(s, say("wrap", plain(*e.WrapM2KW, 5, nearest)))
 	}
-	add(what, strings.Join(s, ", "), e.At.String())
+	return strings.Join(s, ", ")
 }
 
 // warnings are the cautions of this run.
@@ -231,7 +213,7 @@ func (x *sheet) warnings() {
 	}
 }
 
-// readings is the input echo.
+// readings is the input echo, a line of cells for each row of the plan.
 func (x *sheet) readings() {
 	d := x.doc
 	d.heading(say("input title"), 0, 30)
@@ -241,20 +223,54 @@ func (x *sheet) readings() {
 	}
 	d.text(say("input note"))
 	var rows [][]string
+	var cells []string
 	rs := x.p.Readings
-	for _, r := range rs {
-		typed, used := r.Typed, r.Used
-		if typed == "" {
-			typed = say("input default")
-		} else if used == typed {
-			used = say("input same")
+	carded := x.carded()
+	for i := range rs {
+		row := rs[i].At
+		if row.Col = 0; !carded[row] || !slices.Contains(onCard, rs[i].Column) {
+			cells = append(cells, echoed(&rs[i]))
 		}
-		rows = append(rows, []string{r.At.String(), r.Column, typed, joined(used, r.Why)})
+		if i+1 == len(rs) || rs[i].At.Sheet != rs[i+1].At.Sheet || rs[i].At.Row != rs[i+1].At.Row {
+			rows = append(rows, []string{row.String(), strings.Join(cells, " · ")})
+			cells = nil
+		}
 	}
-	d.grouped([]col{{title: say("col cell"), wide: 25}, {title: say("col column"), wide: 39}, {title: say("col typed"), wide: 66}, {title: say("col used"), wide: 50}}, rows, small,
-		func(i int) bool {
-			return i+1 < len(rs) && (rs[i].At.Sheet != rs[i+1].At.Sheet || rs[i].At.Row != rs[i+1].At.Row)
-		})
+	d.table([]col{{title: say("col row"), wide: 30, bold: true}, {title: say("col cells"), wide: frameWide - 30}}, rows, small)
+}
+
+// onCard are the columns of a limit that stand on its card word for word.
+var onCard = []string{"Code", "Clause", "Edition", "Issued by", "Confirmed by", "Confirmed on", "CCP", "Hazard", "Status", "Note"}
+
+// carded are the rows of the limits that have a card.
+func (x *sheet) carded() map[cell.Ref]bool {
+	rows := map[cell.Ref]bool{}
+	for _, f := range x.order {
+		if f.Limit != nil && f.Verdict != rules.NotApplicable {
+			rows[cell.Ref{Sheet: f.Limit.At.Sheet, Row: f.Limit.At.Row}] = true
+		}
+	}
+	return rows
+}
+
+// echoed is one cell of the input: its letter and column, what was typed, and what was used where that differs.
+func echoed(r *cell.Reading) string {
+	at := ""
+	if r.At.Col > 0 {
+		at = cell.ColumnName(r.At.Col) + " "
+	}
+	why := r.Why
+	if strings.HasPrefix(why, "blank:") { // says the same as "(blank)" and the arrow
+		why = ""
+	}
+	switch used := joined(r.Used, why); {
+	case r.Typed == "":
+		return say("echo default", at, r.Column, used)
+	case used == r.Typed:
+		return say("echo same", at, r.Column, r.Typed)
+	default:
+		return say("echo", at, r.Column, r.Typed, used)
+	}
 }
 
 // changeKeys are the reasons to look again, under "change " in words.
@@ -295,7 +311,7 @@ var glossaryKeys = []string{"slowest", "met", "cannot tell", "margin", "clock", 
 func (x *sheet) glossary() {
 	d := x.doc
 	const rows = 14
-	d.heading(say("glossary title"), 0, 100)
+	d.heading(say("glossary title"), 0, 40)
 	var p [][2]string
 	for _, k := range glossaryKeys {
 		p = append(p, [2]string{say("word " + k), say("means " + k)})

@@ -28,7 +28,7 @@ const (
 	small   = 9.0
 	body    = 9.5
 	kitchen = 11.0 // the least on the page for the operator
-	leading = 1.32 // line height over type size
+	leading = 1.28 // line height over type size
 )
 
 // common holds the characters that nearly every report needs. Their font is cut out once and shared (as copies): reading and

@@ -23,8 +23,8 @@ func roastHead() *Head {
 			{cell.Ref{Sheet: "Plan", Row: 4, Col: 2}, "Edition", "3"}, {cell.Ref{Sheet: "Plan", Row: 5, Col: 2}, "Prepared by", "A. Example"},
 			{cell.Ref{Sheet: "Plan", Row: 6, Col: 2}, "Reviewed by", "B. Example"}, {cell.Ref{Sheet: "Plan", Row: 7, Col: 2}, "Authority", "the local authority"}},
 		Problems: cell.Errors{{At: cell.Ref{Sheet: "Limits", Row: 4, Col: 20}, Level: cell.Warning, Field: "Clause", Msg: "no clause is given", Hint: "type the clause as the code prints it"}},
-		Known: []KnownAnswer{{Name: "slab with a film coefficient", Source: "series solution, an invented citation", Expected: 61.2534, Got: 61.2533, Allowance: 0.01, Unit: "°C", OK: true},
-			{Name: "brick held at its surface", Source: "product of three series, an invented citation", Expected: 23.118, Got: 23.117, Allowance: 0.01, Unit: "°C", OK: true}},
+		Known: []KnownAnswer{{Name: "slab with a film coefficient", Source: "series solution, an invented citation", Expected: 61.2534, Got: 61.2533, Allowance: 0.01, Unit: "°C", OK: true, Shape: model.Slab},
+			{Name: "brick held at its surface", Source: "product of three series, an invented citation", Expected: 23.118, Got: 23.117, Allowance: 0.01, Unit: "°C", OK: true, Shape: model.Brick}},
 	}
 }
 

@@ -38,8 +38,8 @@ func (d *doc) product(p *Product) {
 	x.warnings()
 	x.readings()
 	x.changes()
-	x.deviation()
 	x.glossary()
+	x.deviation()
 }
 
 // sheet is a product's report being written.
@@ -593,7 +593,7 @@ func (x *sheet) barsSentence(fs []*rules.Finding) string {
 
 // card is everything about one limit and its finding.
 func (x *sheet) card(f *rules.Finding) {
-	d, h, l := x.doc, x.head, f.Limit
+	d, l := x.doc, f.Limit
 	if l == nil {
 		return
 	}
@@ -601,17 +601,21 @@ func (x *sheet) card(f *rules.Finding) {
 	if f.LowConductivity {
 		title += say("card low")
 	}
-	kind := ""
-	if l.Kind != nil {
-		kind = l.Kind.Name
-	}
+	rows := x.cardRows(f)
+	d.section(say("card title", title, verdictWord(f.Verdict)), 2, min(d.pairsHeight(rows, 36)+1, 30), 1)
+	d.pairs(rows, 36)
+}
+
+// cardRows is everything about a limit and its finding as pairs of what and which; a blank one is left out.
+func (x *sheet) cardRows(f *rules.Finding) [][2]string {
+	h, l := x.head, f.Limit
 	value := h.quantity(f, f.Value, false)
 	if value != "" && finite(f.Required) {
 		value = say("card value", value, h.quantity(f, f.Required, true))
 	}
-	rows := [][2]string{
-		{say("card asks"), say("card asks line", kind, h.asks(l), stages(l), whereAsked(l), f.Level)},
-		{say("card found"), strings.Trim(value+"; "+f.Why, "; ")},
+	return [][2]string{
+		{say("card asks"), say("card asks line", ruleName(l), h.asks(l), stages(l), whereAsked(l), f.Level)},
+		{say("card found"), joined(value, f.Why)},
 		{say("card margin"), x.marginWords(f)},
 		{say("card place"), x.placeAndTime(f)},
 		{say("card clock"), x.clockWords(f)},
@@ -619,12 +623,9 @@ func (x *sheet) card(f *rules.Finding) {
 		{say("card citation"), x.cited(l)},
 		{say("card ccp"), l.CCP},
 		{say("card hazard"), l.Hazard},
-		{say("card status"), l.Status},
 		{say("card note"), l.Note},
 		{say("card cells"), refs(f.Cells)},
 	}
-	d.section(say("card title", title, verdictWord(f.Verdict)), 2, min(d.pairsHeight(rows, 36)+1, 150), 1)
-	d.pairs(rows, 36)
 }
 
 // placeAndTime is where and when a finding is decided, and in which run.
@@ -685,11 +686,14 @@ func whereAsked(l *rules.Limit) string {
 	return l.Where.Name
 }
 
-// cited is the citation as typed, with what is missing.
+// cited is the citation as typed, with what is missing and the status of the limit.
 func (x *sheet) cited(l *rules.Limit) string {
 	s := citation(l)
 	if bare(l) {
 		s += say("citation lacks", lacks(l))
+	}
+	if l.Status != "" {
+		s += say("citation status", l.Status)
 	}
 	return s
 }
@@ -739,22 +743,22 @@ func (x *sheet) predicted() {
 	if x.p.History == nil || x.p.History.Recorded {
 		return
 	}
-	d.heading(say("predicted title"), 0, 130)
+	d.heading(say("predicted title"), 0, 120)
 	d.text(say("predicted note"))
-	d.heading(say("course title"), 1, 107)
-	h.history(x.p, x.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 100))
-	d.y += 101
+	d.heading(say("course title"), 1, 97)
+	h.history(x.p, x.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 90))
+	d.y += 91
 	d.text(x.slowestSentence() + " " + x.levelsSentence() + x.errorSentence())
 	d.heading(say("slowest title"), 1, 30)
 	x.slowest()
 	if f, times := h.profile(x.p, x.decides, small, 84); f != nil {
-		d.heading(say("profile title"), 1, 80)
-		f.draw(d.canvas(d.left, d.y, frameWide, 66))
-		d.y += 67
+		d.heading(say("profile title"), 1, 72)
+		f.draw(d.canvas(d.left, d.y, frameWide, 58))
+		d.y += 59
 		d.text(x.profileSentence(times))
 	}
-	d.heading(say("sketch title"), 1, 58)
-	d.sketch(&x.p.Product, x.decides.place, x.decides.placeName, 48)
+	d.heading(say("sketch title"), 1, 52)
+	d.sketch(&x.p.Product, x.decides.place, x.decides.placeName, 42)
 	if x.p.Product.Shape == model.Stirred {
 		d.text(say("sketch sentence stirred", x.sizes()))
 		return

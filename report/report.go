@@ -22,7 +22,7 @@ type Head struct {
 	EveryS        float64 // interval of the courses, s
 	Problems      cell.Errors
 	NotCalculated []NotCalculated
-	Known         []KnownAnswer // solved by this very program
+	Known         []KnownAnswer // solved by this very program, in groups of one source
 	Products      int           // how many are calculated
 	MostPoints    int           // the largest number of points of a product, the centre counted: columns of the sheet Courses
 }
@@ -47,6 +47,8 @@ type KnownAnswer struct {
 	Allowance     float64
 	Unit          string
 	OK            bool
+	Shape         *model.Shape // what was solved; nil where the case is about properties alone
+	Steps         []model.Step // its surroundings
 }
 
 // Product is one product with everything that its documents show.

@@ -81,6 +81,13 @@ func (d *doc) summary(rows []Row) {
 	for _, s := range CautionText() {
 		d.item("•", s, body)
 	}
+	d.heading(say("known title"), 1, 30)
+	if len(h.Known) == 0 {
+		d.text(say("known none"))
+		return
+	}
+	d.text(h.knownSentence() + " " + say("known note"))
+	d.knownTable(h.Known)
 }
 
 // notCalculated names the products that are missing in the list.

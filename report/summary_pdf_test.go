@@ -201,7 +201,7 @@ func TestWordsAreComplete(t *testing.T) {
 	for key := range words {
 		plain := !strings.HasPrefix(key, "caution ") && !strings.HasPrefix(key, "change ") && !strings.HasPrefix(key, "deviation ") &&
 			!strings.HasPrefix(key, "word ") && !strings.HasPrefix(key, "means ")
-		if plain && !strings.Contains(source, `"`+key+`"`) {
+		if plain && !strings.Contains(source, `"`+key+`"`) && !strings.Contains(source, `"`+strings.TrimSuffix(key, " one")+`"`) {
 			t.Errorf("nobody asks for %q", key)
 		}
 	}

@@ -194,7 +194,7 @@ func (t *Text) limits(x *sheet) {
 			low = textWords["limit low"]
 		}
 		t.heading(3, "limit", n, f.Limit.Name+low, f.Verdict)
-		for _, r := range t.finding(x, f) {
+		for _, r := range x.cardRows(f) {
 			if r[1] != "" {
 				t.item(fmt.Sprintf(textWords["item"], r[0], r[1]))
 			}
@@ -209,29 +209,6 @@ func (t *Text) limits(x *sheet) {
 			s += fmt.Sprintf(textWords["group by"], g.DecidedBy)
 		}
 		t.plain(s)
-	}
-}
-
-// finding is a finding as pairs of what and which, in the words of the PDF.
-func (t *Text) finding(x *sheet, f *rules.Finding) [][2]string {
-	h, l := t.h, f.Limit
-	value := h.quantity(f, f.Value, false)
-	if value != "" && finite(f.Required) {
-		value = say("card value", value, h.quantity(f, f.Required, true))
-	}
-	return [][2]string{
-		{say("card asks"), say("card asks line", ruleName(l), h.asks(l), stages(l), whereAsked(l), f.Level)},
-		{say("card found"), joined(value, f.Why)},
-		{say("card margin"), x.marginWords(f)},
-		{say("card place"), x.placeAndTime(f)},
-		{say("card clock"), x.clockWords(f)},
-		{say("card notes"), strings.Join(f.Notes, "; ")},
-		{say("card citation"), x.cited(l)},
-		{say("card ccp"), l.CCP},
-		{say("card hazard"), l.Hazard},
-		{say("card status"), l.Status},
-		{say("card note"), l.Note},
-		{say("card cells"), refs(f.Cells)},
 	}
 }
 

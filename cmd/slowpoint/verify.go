@@ -36,7 +36,7 @@ func verifyCommand() *cobra.Command {
 			}
 			fmt.Fprintf(out, "\n%d of %d cases met\n", n-missed, n)
 			if missed > 0 {
-				return &failure{exitNotMet, fmt.Errorf("%d cases with a known answer are not met on this machine: do not use its results", missed)}
+				return &failure{exitNotMet, fmt.Errorf("not met on this machine: %s with a known answer; do not use its results", count(missed, "case"))}
 			}
 			return nil
 		},
@@ -55,7 +55,8 @@ func known() []knownCase {
 	for _, c := range verify.Cases() {
 		r := verify.Run(c)
 		out = append(out, knownCase{report.KnownAnswer{Name: c.Name, Source: c.Source, Expected: c.Expected, Got: r.Got,
-			Allowance: c.Allowance, Unit: c.Unit, OK: r.Met}, c.Area})
+			Allowance: c.Allowance, Unit: c.Unit, OK: r.Met,
+			Shape: c.Problem.Product.Shape, Steps: c.Problem.Steps}, c.Area})
 	}
 	return out
 }
