@@ -291,7 +291,7 @@ func (a *axis) step(mem, tmp *slab, p Properties, lo, up film) *axisStep {
 	if a.kind == lumped {
 		return wellMixed
 	}
-	mark := tmp.free
+	mark := tmp.mark()
 	scale := p.KWmK / (p.RhoKgM3 * p.CJkgK) / (a.radiusM * a.radiusM)
 	rho := func(f film) float64 {
 		if f.group < 0 {
@@ -322,7 +322,7 @@ func (a *axis) step(mem, tmp *slab, p Properties, lo, up film) *axisStep {
 		s.gLo[i] *= scale
 		s.gUp[i] = g[i] * scale
 	}
-	tmp.free = mark
+	tmp.back(mark)
 	return s
 }
 

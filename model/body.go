@@ -1,7 +1,9 @@
 package model
 
 import (
+	"cmp"
 	"math"
+	"slices"
 	"sort"
 )
 
@@ -12,12 +14,14 @@ type body struct {
 	radii [3]float64
 	nodes *nodes
 	order []int // nodes from the centre outwards
+	rank  []int // by node: its place in order
 	buf   []float64
 }
 
 func newBody(kinds [3]axisKind, radii [3]float64, nd *nodes) *body {
-	b := &body{kinds: kinds, radii: radii, nodes: nd, order: make([]int, nd.count()), buf: make([]float64, nd.count())}
-	far := make([]float64, nd.count())
+	n := nd.count()
+	b := &body{kinds: kinds, radii: radii, nodes: nd, order: make([]int, n), rank: make([]int, n), buf: make([]float64, n)}
+	far := make([]float64, n)
 	for i := range b.order {
 		b.order[i] = i
 		x := b.node(i)
@@ -25,7 +29,10 @@ func newBody(kinds [3]axisKind, radii [3]float64, nd *nodes) *body {
 			far[i] += x[a] * x[a] * radii[a] * radii[a]
 		}
 	}
-	sort.SliceStable(b.order, func(i, j int) bool { return far[b.order[i]] < far[b.order[j]] })
+	slices.SortStableFunc(b.order, func(i, j int) int { return cmp.Compare(far[i], far[j]) })
+	for k, i := range b.order {
+		b.rank[i] = k
+	}
 	return b
 }
 
@@ -122,33 +129,60 @@ const rivalShare = 0.15
 
 // rival finds another node, lower than its neighbours, beside which a parabola promises a better place than best (°C); -1 if none.
 func (b *body) rival(first int, sign, reach, best float64) int {
-	stride := [3]int{len(b.nodes.x[1]) * len(b.nodes.x[2]), len(b.nodes.x[2]), 1}
+	stride := b.strides()
 	found, most := -1, sign*best-flatK
 	level := sign*b.buf[first] + reach
-	for i, c := range b.buf {
-		if sign*c > level || i == first {
-			continue
-		}
-		g, promise := b.index(i), sign*c
-		for a := range g {
-			xs := b.nodes.x[a]
-			if b.kinds[a] == lumped {
-				continue
+	i := -1
+	for g0 := range b.nodes.x[0] {
+		for g1 := range b.nodes.x[1] {
+			for g2 := range b.nodes.x[2] {
+				i++
+				if c := sign * b.buf[i]; c > level || i == first {
+					continue
+				}
+				if g := [3]int{g0, g1, g2}; b.deeper(i, g, stride, sign) {
+					if p := b.promise(i, g, stride, sign); p < most {
+						found, most = i, p
+					}
+				}
 			}
-			lo, hi := max(g[a]-1, 0), min(g[a]+1, len(xs)-1)
-			f := [3]float64{sign * b.buf[i+(lo-g[a])*stride[a]], sign * c, sign * b.buf[i+(hi-g[a])*stride[a]]}
-			if f[0] < f[1] || f[2] < f[1] {
-				promise = math.Inf(1)
-				break
-			}
-			v := valleyOf([3]float64{xs[lo], xs[g[a]], xs[hi]}, f)
-			promise -= v.bend * (v.start - v.mid) * (v.start - v.mid)
-		}
-		if promise < most {
-			found, most = i, promise
 		}
 	}
 	return found
+}
+
+// strides gives the distance of neighbours in buf, by axis.
+func (b *body) strides() [3]int {
+	return [3]int{len(b.nodes.x[1]) * len(b.nodes.x[2]), len(b.nodes.x[2]), 1}
+}
+
+// deeper tells whether no neighbour of a node is lower than it.
+func (b *body) deeper(i int, g, stride [3]int, sign float64) bool {
+	c := sign * b.buf[i]
+	for a := 2; a >= 0; a-- {
+		if g[a] > 0 && sign*b.buf[i-stride[a]] < c || g[a] < len(b.nodes.x[a])-1 && sign*b.buf[i+stride[a]] < c {
+			return false
+		}
+	}
+	return true
+}
+
+// promise is the lowest point of the parabolas through a node and its neighbours, one along each axis.
+func (b *body) promise(i int, g, stride [3]int, sign float64) float64 {
+	low := sign * b.buf[i]
+	for a := range g {
+		x, f := b.around(i, g[a], a, stride[a], sign)
+		v := valleyOf(x, f)
+		low -= v.bend * (v.start - v.mid) * (v.start - v.mid)
+	}
+	return low
+}
+
+// around gives the coordinates and heights of a node and its two neighbours on an axis; at an end the node itself stands for the neighbour.
+func (b *body) around(i, g, a, stride int, sign float64) (x, f [3]float64) {
+	xs := b.nodes.x[a]
+	lo, hi := max(g-1, 0), min(g+1, len(xs)-1)
+	return [3]float64{xs[lo], xs[g], xs[hi]}, [3]float64{sign * b.buf[i+(lo-g)*stride], sign * b.buf[i], sign * b.buf[i+(hi-g)*stride]}
 }
 
 // lowest gives the coldest and hottest of the nodes in buf; of those that are as cold or hot the nearest to the centre.
@@ -161,42 +195,40 @@ func (b *body) lowest() (lo, hi int) {
 			hot = c
 		}
 	}
-	lo, hi = -1, -1
-	for _, i := range b.order {
-		if lo < 0 && b.buf[i] <= cold+flatK {
-			lo = i
-		}
-		if hi < 0 && b.buf[i] >= hot-flatK {
-			hi = i
-		}
-		if lo >= 0 && hi >= 0 {
-			break
-		}
-	}
-	return lo, hi
+	return b.nearest(cold+flatK, 1), b.nearest(hot-flatK, -1)
 }
 
-// polish moves from a node to the extreme beside it; sign 1 looks for the coldest, -1 for the hottest.
+// nearest gives the node nearest to the centre of those not above level (sign 1) or not below it (-1); there is one.
+func (b *body) nearest(level, sign float64) int {
+	best := len(b.rank) - 1
+	for i, c := range b.buf {
+		if sign*(c-level) <= 0 && b.rank[i] < best {
+			best = b.rank[i]
+		}
+	}
+	return b.order[best]
+}
+
+// polish moves from a node to the extreme beside it; sign 1 looks for the coldest, -1 for the hottest. It goes along the axes on which the
+// nodes leave it open, in turn, until nothing moves.
 func (b *body) polish(s snapshot, node int, sign float64) extreme {
-	stride := [3]int{len(b.nodes.x[1]) * len(b.nodes.x[2]), len(b.nodes.x[2]), 1}
-	g := b.index(node)
+	stride, g := b.strides(), b.index(node)
 	var done [3]bool
+	open := 0
 	for a := range g {
-		done[a] = b.settled(node, g[a], a, stride[a], sign)
+		if done[a] = b.settled(node, g[a], a, stride[a], sign); !done[a] {
+			open++
+		}
 	}
-	if done == [3]bool{true, true, true} {
-		return extreme{b.buf[node], b.node(node)}
-	}
-	return b.descend(s, node, g, stride, done, sign)
-}
-
-// descend goes along the axes that are not done, in turn, until nothing moves.
-func (b *body) descend(s snapshot, node int, g, stride [3]int, done [3]bool, sign float64) extreme {
 	e := extreme{b.buf[node], b.node(node)}
-	var r, phi, dphi [maxDegrees]float64
+	if open == 0 {
+		return e
+	}
+	var r [maxDegrees]float64
+	at := g // the node that the place lies on, by axis; -1: between
 	sweeps := 3
-	if (done[0] || done[1]) && (done[0] || done[2]) && (done[1] || done[2]) {
-		sweeps = 1 // one axis to go along
+	if open == 1 {
+		sweeps = 1
 	}
 	for sweep := 0; sweep < sweeps; sweep++ {
 		moved := false
@@ -204,35 +236,20 @@ func (b *body) descend(s snapshot, node int, g, stride [3]int, done [3]bool, sig
 			if sweep == 0 && done[a] || b.kinds[a] == lumped {
 				continue
 			}
-			xs := b.nodes.x[a]
-			lo, hi := max(g[a]-1, 0), min(g[a]+1, len(xs)-1)
-			if sweep == 0 {
-				here := b.buf[node]
-				if math.Abs(b.buf[node+(lo-g[a])*stride[a]]-here) <= flatK && math.Abs(b.buf[node+(hi-g[a])*stride[a]]-here) <= flatK {
-					continue // flat: stay where the centre is nearest
-				}
+			x, f := b.around(node, g[a], a, stride[a], sign)
+			if sweep == 0 && f[0]-f[1] <= flatK && f[2]-f[1] <= flatK {
+				continue // flat: stay where the centre is nearest
 			}
-			n := len(b.nodes.phi[a]) / len(xs)
-			bs := baseOf(b.kinds[a], n)
-			s.slice(a, e.x, r[:n])
-			slope := func(x float64) float64 {
-				bs.values(x, phi[:n], dphi[:n])
-				d := 0.0
-				for m := 0; m < n; m++ {
-					d += r[m] * dphi[m]
-				}
-				return sign * d
+			n := len(b.nodes.phi[a]) / len(b.nodes.x[a])
+			s.slice(a, e.x, at, r[:n])
+			v := valleyOf(x, f)
+			if sweep > 0 {
+				v.start = e.x[a]
 			}
-			x := valleyOf([3]float64{xs[lo], xs[g[a]], xs[hi]}, [3]float64{sign * b.buf[node+(lo-g[a])*stride[a]],
-				sign * b.buf[node], sign * b.buf[node+(hi-g[a])*stride[a]]}).bottom(slope)
-			bs.values(x, phi[:n], nil)
-			c := 0.0
-			for m := 0; m < n; m++ {
-				c += r[m] * phi[m]
-			}
+			c, to := v.newton(baseOf(b.kinds[a], n), r[:n], sign)
 			if sign*c < sign*e.c-1e-12 {
-				moved = moved || math.Abs(x-e.x[a]) > 1e-4 && sign*(e.c-c) > 3e-5
-				e.c, e.x[a] = c, x
+				moved = moved || math.Abs(to-e.x[a]) > 1e-4 && sign*(e.c-c) > 3e-5
+				e.c, e.x[a], at[a] = c, to, -1
 			}
 		}
 		if !moved {
@@ -283,37 +300,6 @@ func valleyOf(x, f [3]float64) valley {
 		v.start = math.Max(v.lo, math.Min(v.hi, (x[0]+x[1])/2-left/v.bend))
 	}
 	return v
-}
-
-// bottom finds the minimum: where slope turns from negative to positive, by Newton's method with a curvature that is kept up to date
-// by secants, and by halving where that leaves the bracket. The end of the bracket where there is none.
-func (v valley) bottom(slope func(float64) float64) float64 {
-	lo, hi, x, bend := v.lo, v.hi, v.start, v.bend
-	f := slope(x)
-	for it := 0; it < 40 && hi-lo > 1e-5; it++ {
-		if f < 0 {
-			lo = x
-		} else {
-			hi = x
-		}
-		next := x - f/bend
-		if bend <= 0 || !(next > lo && next < hi) {
-			switch {
-			case it == 0 && f < 0 && slope(hi) <= 0:
-				return hi
-			case it == 0 && f > 0 && slope(lo) >= 0:
-				return lo
-			}
-			next = (lo + hi) / 2
-		}
-		if math.Abs(f*(next-x)) < 2e-6 { // K: no more is to be gained
-			return next
-		}
-		g := slope(next)
-		bend = (g - f) / (next - x)
-		x, f = next, g
-	}
-	return x
 }
 
 // newton finds the minimum of sign times the sum of q times the polynomials, by Newton's method from the start on, kept between the ends

@@ -22,8 +22,9 @@ type field interface {
 type snapshot interface {
 	// grid fills out with the temperatures at all nodes, the last axis fastest.
 	grid(out []float64)
-	// slice gives the coefficients of the polynomials along one axis through a place.
-	slice(axis int, x coord, out []float64)
+	// slice gives the coefficients of the polynomials along one axis through a place; node tells the nodes that the place lies on, -1 where
+	// it lies between.
+	slice(axis int, x coord, node [3]int, out []float64)
 	mean() float64
 }
 
@@ -102,6 +103,17 @@ func (s *slab) take(n int) []float64 {
 		clear(out)
 	}
 	return out
+}
+
+// mark is where a scratch slab stands; back gives all that was taken since to be handed out again. Where a piece ran out in between, the
+// newest goes on: it is larger, and everything in it was taken since.
+func (s *slab) mark() slab { return *s }
+
+func (s *slab) back(to slab) {
+	s.free = to.free
+	if s.wide != to.wide {
+		s.free = s.all
+	}
 }
 
 // scratch is memory for what does not outlive one solution: a second field, and what is needed within a call.
@@ -296,7 +308,7 @@ func (f *tensor) carry(st *tensorStep) []float64 {
 		}
 		return out
 	}
-	mark := f.tmp.free
+	mark := f.tmp.mark()
 	sg := &f.segs[len(f.segs)-1]
 	now := f.tmp.take(n)
 	f.modes(sg, sg.t1-sg.t0, now)
@@ -312,7 +324,7 @@ func (f *tensor) carry(st *tensorStep) []float64 {
 		along(out, now, p[1], n0, n1, n2)
 		along(now, out, p[2], n0*n1, n2, 1)
 	}
-	f.tmp.free = mark
+	f.tmp.back(mark)
 	return out
 }
 
@@ -678,7 +690,7 @@ func (s *tensorShot) resting() []float64 {
 	return s.all
 }
 
-func (s *tensorShot) slice(axis int, x coord, out []float64) {
+func (s *tensorShot) slice(axis int, x coord, node [3]int, out []float64) {
 	f := s.f
 	if f.single() {
 		s.only(out)
@@ -686,15 +698,21 @@ func (s *tensorShot) slice(axis int, x coord, out []float64) {
 	}
 	st := s.sg.step
 	n := [3]int{f.axes[0].n, f.axes[1].n, f.axes[2].n}
-	var v [3][maxDegrees]float64
-	for a := range f.axes {
-		if a != axis {
-			modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
+	var buf [3][maxDegrees]float64
+	var v [3][]float64
+	for a, ax := range f.axes {
+		switch {
+		case a == axis:
+		case node[a] >= 0:
+			v[a] = st.gridB[a][node[a]*ax.n:][:ax.n]
+		default:
+			v[a] = buf[a][:ax.n]
+			modeValues(ax, st.ax[a].b, x[a], v[a])
 		}
 	}
 	var q [maxDegrees]float64
-	s.along(axis, &v, s.amp, s.keep, s.last, q[:])
-	still := s.restAlong(axis, x, &v)
+	s.along(axis, v, s.amp, s.keep, s.last, q[:])
+	still := s.restAlong(axis, x, v)
 	for i, c := range still {
 		q[i] += c
 	}
@@ -702,7 +720,7 @@ func (s *tensorShot) slice(axis int, x coord, out []float64) {
 }
 
 // along adds to q the modes of one axis, with the others summed up at a place where their modes are v.
-func (s *tensorShot) along(axis int, v *[3][maxDegrees]float64, amp []float64, keep [3]int, last []int, q []float64) {
+func (s *tensorShot) along(axis int, v [3][]float64, amp []float64, keep [3]int, last []int, q []float64) {
 	n1, n2 := s.f.axes[1].n, s.f.axes[2].n
 	var dots [maxDegrees]float64
 	for a := 0; a < keep[0]; a++ {
@@ -746,7 +764,7 @@ type restSlice struct {
 
 // restAlong gives what the media hold along one axis through a place, where the modes of the others are v. Much is asked again for the same
 // lines, along edges and the axes of symmetry, and kept.
-func (s *tensorShot) restAlong(axis int, x coord, v *[3][maxDegrees]float64) []float64 {
+func (s *tensorShot) restAlong(axis int, x coord, v [3][]float64) []float64 {
 	all := s.resting()
 	x[axis] = 0
 	if !s.moving {

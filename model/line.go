@@ -185,11 +185,11 @@ func (w *lineSampler) ends() (low, high extreme) {
 func (b *body) turning() (lo, hi, turns int) {
 	cold, hot, before := b.buf[0], b.buf[0], b.buf[0]
 	rising, falling := false, false
-	for i, c := range b.buf {
+	for _, c := range b.buf {
 		if c < cold {
-			cold, lo = c, i
+			cold = c
 		} else if c > hot {
-			hot, hi = c, i
+			hot = c
 		}
 		switch d := c - before; {
 		case d > flatK:
@@ -205,36 +205,24 @@ func (b *body) turning() (lo, hi, turns int) {
 		}
 		before = c
 	}
-	return b.nearest(lo, cold+flatK, 1), b.nearest(hi, hot-flatK, -1), turns
-}
-
-// nearest gives the node nearest to the centre that is not above level (sign 1) or not below it (-1); found is one.
-func (b *body) nearest(found int, level, sign float64) int {
-	for _, i := range b.order {
-		if i == found || sign*b.buf[i] <= sign*level {
-			return i
-		}
-	}
-	return found
+	return b.nearest(cold+flatK, 1), b.nearest(hot-flatK, -1), turns
 }
 
 // beside finds the extreme at or beside a node; sign 1 looks for the coldest. near is where it was found last, and is kept up to date.
 func (w *lineSampler) beside(node int, sign float64, near *float64) extreme {
-	b, xs := w.b, w.b.nodes.x[0]
-	e := extreme{b.buf[node], coord{xs[node]}}
-	lo, hi := max(node-1, 0), min(node+1, len(xs)-1)
-	if b.settled(node, node, 0, 1, sign) || math.Abs(b.buf[lo]-e.c) <= flatK && math.Abs(b.buf[hi]-e.c) <= flatK {
+	b := w.b
+	e := extreme{b.buf[node], coord{b.nodes.x[0][node]}}
+	x, f := b.around(node, node, 0, 1, sign)
+	if b.settled(node, node, 0, 1, sign) || f[0]-f[1] <= flatK && f[2]-f[1] <= flatK {
 		return e // the latter is flat: stay where the centre is nearest
 	}
 	w.polynomials()
-	v := valleyOf([3]float64{xs[lo], xs[node], xs[hi]}, [3]float64{sign * b.buf[lo], sign * b.buf[node], sign * b.buf[hi]})
+	v := valleyOf(x, f)
 	if *near > v.lo && *near < v.hi {
 		v.start = *near
 	}
-	c, x := v.newton(w.f.axes[0].base, w.line, sign)
-	if sign*c < sign*e.c-1e-12 {
-		e.c, e.x[0] = c, x
-		*near = x
+	if c, to := v.newton(w.f.axes[0].base, w.line, sign); sign*c < sign*e.c-1e-12 {
+		e.c, e.x[0], *near = c, to, to
 	}
 	return e
 }

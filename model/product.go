@@ -84,7 +84,7 @@ func (f *product) run(cs *chainStep) {
 		st.e0[a] = st.ax[a].b[:f.axes[a].n]
 	}
 	if last != nil {
-		mark := f.tmp.free
+		mark := f.tmp.mark()
 		var p [3][]float64
 		for a := range f.axes {
 			p[a] = project(f.tmp, f.axes[a].n, last.ax[a].b, st.ax[a].b)
@@ -105,7 +105,7 @@ func (f *product) run(cs *chainStep) {
 				st.terms = append(st.terms, t)
 			}
 		}
-		f.tmp.free = mark
+		f.tmp.back(mark)
 	}
 	if before != st.mediumC {
 		st.terms = append(st.terms, productTerm{weight: before - st.mediumC, x: st.e0})
@@ -167,7 +167,7 @@ type productShot struct {
 	st   *productStep
 	keep [3]int
 	amp  [][3][]float64 // by term and axis: modes at the instant
-	line [3][]float64   // scratch: one term along each axis
+	line [][3][]float64 // by term and axis: the term at the nodes, filled by grid
 }
 
 func (f *product) at(t float64) snapshot {
@@ -176,11 +176,11 @@ func (f *product) at(t float64) snapshot {
 	s.st = st
 	tau := math.Min(math.Max(t-st.t0, 0), st.t1-st.t0)
 	for len(s.amp) < len(st.terms) {
-		var x [3][]float64
+		var x, line [3][]float64
 		for a := range x {
-			x[a] = make([]float64, f.axes[a].n)
+			x[a], line[a] = make([]float64, f.axes[a].n), make([]float64, len(f.nodes.x[a]))
 		}
-		s.amp = append(s.amp, x)
+		s.amp, s.line = append(s.amp, x), append(s.line, line)
 	}
 	for a := range f.axes {
 		var e [maxDegrees]float64
@@ -204,48 +204,54 @@ func (s *productShot) grid(out []float64) {
 	for i := range out {
 		out[i] = st.mediumC
 	}
-	for a := range s.line {
-		if s.line[a] == nil {
-			s.line[a] = make([]float64, len(f.nodes.x[a]))
-		}
-	}
 	for t := range st.terms {
-		for a := range f.axes {
-			n := f.axes[a].n
-			for g := range s.line[a] {
-				dot := 0.0
-				for k, v := range st.gridB[a][g*n : g*n+s.keep[a]] {
-					dot += v * s.amp[t][a][k]
-				}
-				s.line[a][g] = dot
-			}
+		line := &s.line[t]
+		for a, ax := range f.axes {
+			clear(line[a])
+			addRows(line[a], st.gridB[a], ax.n, s.amp[t][a][:s.keep[a]])
 		}
-		i := 0
-		for _, x := range s.line[0] {
-			for _, y := range s.line[1] {
-				xy := st.terms[t].weight * x * y
-				for k, z := range s.line[2] {
-					out[i+k] += xy * z
-				}
-				i += len(s.line[2])
+		weight := st.terms[t].weight
+		if f.axes[2].kind == lumped {
+			for i, x := range line[0] {
+				add(out[i*len(line[1]):][:len(line[1])], weight*x, line[1])
+			}
+			continue
+		}
+		i, n := 0, len(line[2])
+		for _, x := range line[0] {
+			for _, y := range line[1] {
+				add(out[i:i+n], weight*x*y, line[2])
+				i += n
 			}
 		}
 	}
 }
 
-func (s *productShot) slice(axis int, x coord, out []float64) {
+// add adds f times x to out.
+func add(out []float64, f float64, x []float64) {
+	x = x[:len(out)]
+	for i := range out {
+		out[i] += f * x[i]
+	}
+}
+
+func (s *productShot) slice(axis int, x coord, node [3]int, out []float64) {
 	f, st := s.f, s.st
 	var v [3][maxDegrees]float64
-	for a := range f.axes {
-		if a != axis {
-			modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
+	for a, ax := range f.axes {
+		if a != axis && node[a] < 0 {
+			modeValues(ax, st.ax[a].b, x[a], v[a][:])
 		}
 	}
 	var q [maxDegrees]float64
 	for t := range st.terms {
 		w := st.terms[t].weight
 		for a := range f.axes {
-			if a == axis {
+			switch {
+			case a == axis:
+				continue
+			case node[a] >= 0:
+				w *= s.line[t][a][node[a]]
 				continue
 			}
 			dot := 0.0

@@ -688,7 +688,7 @@ func (f *product) forget() {
 	for _, st := range f.steps {
 		st.gridB = [3][]float64{}
 	}
-	f.now.line = [3][]float64{}
+	f.now.amp, f.now.line = nil, nil
 }
 
 // hulls bounds the food by span: nothing conducts beyond the range of its start and its media so far.
