@@ -31,7 +31,7 @@ func (d *doc) marginBars(fs []*rules.Finding) {
 		lines := wrap(d.clean(name), barNames-2, small, false)
 		h := max(float64(len(lines))*height(small)+1.5, 6.5)
 		d.need(h + 8*btof(headed < 0))
-		if headed != d.pdf.PageNo() {
+		if headed != d.pdf.page {
 			d.y += height(small)
 			d.put(d.left, d.y-1, say("bars limit"), small, true)
 			d.put(d.left+barNames, d.y-1, say("bars temperature", d.head.degree()), small, true)
@@ -39,7 +39,7 @@ func (d *doc) marginBars(fs []*rules.Finding) {
 			d.put(d.left+barNames+2*barPanel, d.y-1, say("bars verdict"), small, true)
 			d.rule(d.left, d.left+frameWide, d.y+0.5, 1)
 			d.y += 1
-			headed = d.pdf.PageNo()
+			headed = d.pdf.page
 		}
 		for i, s := range lines {
 			d.put(d.left, d.y+0.5+(float64(i+1)-0.2)*height(small), s, small, false)
@@ -85,15 +85,11 @@ func scaleOf(fs []*rules.Finding, of func(*rules.Finding) *float64) scale {
 
 // bar draws one bar: full if met, hatched if not met, empty if it cannot be told.
 func (d *doc) bar(x, y, h float64, v *float64, s scale, verdict rules.Verdict, write func(float64) string) {
-	d.forget()
 	x++
 	span := barPanel - barRoom - 2
 	zero := x + span*(-s.lo)/(s.hi-s.lo)
 	p := d.pdf
-	p.SetDrawColor(0, 0, 0)
-	p.SetLineWidth(1 * mmPerPt)
-	p.SetDashPattern(nil, 0)
-	p.Line(zero, y, zero, y+h)
+	p.line(pencil{pt: 1, color: black}, zero, y, zero, y+h)
 	if !finite(v) {
 		d.put(zero+1.5, y+h/2+1.2, "–", small, false)
 		return
@@ -102,28 +98,26 @@ func (d *doc) bar(x, y, h float64, v *float64, s scale, verdict rules.Verdict, w
 	a, b := min(zero, end), max(zero, end)
 	const tall = 3.6
 	top := y + (h-tall)/2
-	p.SetLineWidth(0.8 * mmPerPt)
 	switch verdict {
 	case rules.Met:
-		p.SetFillColor(int(blue.R), int(blue.G), int(blue.B))
-		p.Rect(a, top, max(b-a, 0.3), tall, "F")
+		p.ground(blue)
+		p.box(a, top, max(b-a, 0.3), tall)
+		p.fill()
 	case rules.NotMet:
-		p.SetDrawColor(int(vermillion.R), int(vermillion.G), int(vermillion.B))
-		p.Rect(a, top, max(b-a, 0.3), tall, "D")
+		edge := pencil{pt: 0.8, color: vermillion}
+		p.frame(edge, a, top, max(b-a, 0.3), tall)
 		for q := a - tall; q < b; q += 1.6 { // strokes rising to the right, kept within the bar
 			x1, x2 := max(q, a), min(q+tall, b)
 			if x2 > x1 {
-				p.Line(x1, top+tall-(x1-q), x2, top+tall-(x2-q))
+				p.line(edge, x1, top+tall-(x1-q), x2, top+tall-(x2-q))
 			}
 		}
 	default:
-		p.Rect(a, top, max(b-a, 0.3), tall, "D")
+		p.frame(pencil{pt: 0.8, color: black}, a, top, max(b-a, 0.3), tall)
 	}
 	if *v > s.hi || *v < s.lo { // a gap near the end: it goes on
-		p.SetDrawColor(255, 255, 255)
-		p.SetLineWidth(2 * mmPerPt)
 		cut := end - 2*math.Copysign(1, *v)
-		p.Line(cut-0.8, top+tall+0.4, cut+0.8, top-0.4)
+		p.line(pencil{pt: 2, color: white}, cut-0.8, top+tall+0.4, cut+0.8, top-0.4)
 	}
 	d.put(math.Max(b, zero)+1.2, y+h/2+1.2, write(*v), small, false)
 }

@@ -5,7 +5,6 @@ import (
 	"image/color"
 	"math"
 
-	"github.com/jung-kurt/gofpdf"
 	xfont "golang.org/x/image/font"
 	"gonum.org/v1/plot/font"
 	"gonum.org/v1/plot/vg"
@@ -16,7 +15,7 @@ const mmPerPt = 25.4 / 72
 // canvas draws charts as vectors and real text onto an area of a page whose unit is mm.
 // The origin is the lower left corner of the area.
 type canvas struct {
-	pdf         *gofpdf.Fpdf
+	pdf         *paper
 	clean       func(string) string
 	left, floor float64 // the lower left corner of the area from the top left of the page, mm
 	w, h        float64 // mm
@@ -26,18 +25,14 @@ type canvas struct {
 
 // pen is the state of a canvas.
 type pen struct {
-	m     [6]float64 // to the area: X = m0 x + m2 y + m4, Y = m1 x + m3 y + m5 (mm, y up)
-	width vg.Length
-	dash  []float64
-	phase float64
-	color color.NRGBA
+	m [6]float64 // to the area: X = m0 x + m2 y + m4, Y = m1 x + m3 y + m5 (mm, y up)
+	pencil
 }
 
 // canvas opens an area of the current page; top is the distance from the top of the page, mm.
 func (d *doc) canvas(left, top, w, h float64) *canvas {
-	d.forget()
 	return &canvas{pdf: d.pdf, clean: d.clean, left: left, floor: top + h, w: w, h: h,
-		now: pen{m: [6]float64{1, 0, 0, 1, 0, 0}, width: 1, color: color.NRGBA{A: 255}}}
+		now: pen{m: [6]float64{1, 0, 0, 1, 0, 0}, pencil: pencil{pt: 1, color: black}}}
 }
 
 func (c *canvas) Size() (vg.Length, vg.Length) {
@@ -57,13 +52,13 @@ func (c *canvas) turn(n [6]float64) {
 		m[0]*n[4] + m[2]*n[5] + m[4], m[1]*n[4] + m[3]*n[5] + m[5]}
 }
 
-func (c *canvas) SetLineWidth(w vg.Length) { c.now.width = w }
+func (c *canvas) SetLineWidth(w vg.Length) { c.now.pt = float64(w) }
 func (c *canvas) SetLineDash(p []vg.Length, phase vg.Length) {
 	c.now.dash = nil
 	for _, d := range p {
-		c.now.dash = append(c.now.dash, float64(d)*mmPerPt)
+		c.now.dash = append(c.now.dash, float64(d))
 	}
-	c.now.phase = float64(phase) * mmPerPt
+	c.now.phase = float64(phase)
 }
 func (c *canvas) SetColor(k color.Color) {
 	if k == nil {
@@ -88,86 +83,81 @@ func (c *canvas) Pop() {
 // trace lays the path down.
 func (c *canvas) trace(p vg.Path) {
 	begun := false
+	var x0, y0 float64 // where the path stands
 	for _, e := range p {
 		x, y := c.at(e.Pos)
 		switch e.Type {
 		case vg.MoveComp:
-			c.pdf.MoveTo(x, y)
+			c.pdf.moveTo(x, y)
 			begun = true
 		case vg.LineComp:
-			c.pdf.LineTo(x, y)
+			c.pdf.lineTo(x, y)
 		case vg.CurveComp:
-			a, b := c.at(e.Control[0])
-			if len(e.Control) == 1 {
-				c.pdf.CurveTo(a, b, x, y)
+			x1, y1 := c.at(e.Control[0])
+			if len(e.Control) == 1 { // quadratic: the cubic curve that is the same
+				c.pdf.curveTo(x0+(x1-x0)*2/3, y0+(y1-y0)*2/3, x+(x1-x)*2/3, y+(y1-y)*2/3, x, y)
 			} else {
-				f, g := c.at(e.Control[1])
-				c.pdf.CurveBezierCubicTo(a, b, f, g, x, y)
+				x2, y2 := c.at(e.Control[1])
+				c.pdf.curveTo(x1, y1, x2, y2, x, y)
 			}
-		case vg.ArcComp: // short chords, fine enough in print
-			n := int(math.Ceil(math.Abs(e.Angle)/(math.Pi/16))) + 1
-			for i := 0; i <= n; i++ {
-				s, k := math.Sincos(e.Start + e.Angle*float64(i)/float64(n))
-				x, y := c.at(vg.Point{X: e.Pos.X + e.Radius*vg.Length(k), Y: e.Pos.Y + e.Radius*vg.Length(s)})
-				if !begun {
-					c.pdf.MoveTo(x, y)
-					begun = true
-					continue
-				}
-				c.pdf.LineTo(x, y)
-			}
+		case vg.ArcComp:
+			x, y = c.arc(e, begun)
+			begun = true
 		case vg.CloseComp:
-			c.pdf.ClosePath()
+			c.pdf.closePath()
 		}
+		x0, y0 = x, y
 	}
 }
 
+// arc lays an arc of a circle down, after a line to its beginning, and gives its end.
+func (c *canvas) arc(e vg.PathComp, begun bool) (x, y float64) {
+	m := c.now.m
+	scale, turn := math.Hypot(m[0], m[1]), math.Atan2(m[1], m[0]) // a canvas is never sheared or mirrored
+	r := float64(e.Radius) * mmPerPt * scale
+	cx, cy := c.at(e.Pos)
+	s, k := math.Sincos(e.Start + turn)
+	if begun {
+		c.pdf.lineTo(cx+r*k, cy-r*s)
+	} else {
+		c.pdf.moveTo(cx+r*k, cy-r*s)
+	}
+	c.pdf.arc(cx, cy, r, e.Start+turn, e.Angle)
+	s, k = math.Sincos(e.Start + turn + e.Angle)
+	return cx + r*k, cy - r*s
+}
+
 func (c *canvas) Stroke(p vg.Path) {
-	if c.now.width <= 0 || len(p) == 0 {
+	if c.now.pt <= 0 || len(p) == 0 {
 		return
 	}
-	k := c.now.color
-	c.pdf.SetDrawColor(int(k.R), int(k.G), int(k.B))
-	c.pdf.SetLineWidth(float64(c.now.width) * mmPerPt)
-	c.pdf.SetLineJoinStyle("round")
-	c.pdf.SetDashPattern(c.now.dash, c.now.phase)
+	c.pdf.pencil(c.now.pencil)
 	c.trace(p)
-	c.pdf.DrawPath("D")
-	c.pdf.SetDashPattern(nil, 0)
+	c.pdf.stroke()
 }
 
 func (c *canvas) Fill(p vg.Path) {
 	if len(p) == 0 {
 		return
 	}
-	k := c.now.color
-	c.pdf.SetFillColor(int(k.R), int(k.G), int(k.B))
+	c.pdf.ground(c.now.color)
 	c.trace(p)
-	c.pdf.DrawPath("F")
+	c.pdf.fill()
 }
 
 func (c *canvas) FillString(f font.Face, p vg.Point, s string) {
 	if f.Font.Size == 0 || s == "" {
 		return
 	}
-	s = c.clean(s)
 	x, y := c.at(p)
-	k := c.now.color
-	style := ""
-	if f.Font.Weight == xfont.WeightBold {
-		style = "B"
+	draw := func() {
+		c.pdf.text(x, y, c.clean(s), float64(f.Font.Size), f.Font.Weight == xfont.WeightBold, c.now.color)
 	}
-	c.pdf.SetTextColor(int(k.R), int(k.G), int(k.B))
-	c.pdf.SetFont(family, style, float64(f.Font.Size))
-	angle := math.Atan2(c.now.m[1], c.now.m[0]) * 180 / math.Pi
-	if angle == 0 {
-		c.pdf.Text(x, y, s)
-		return
+	if angle := math.Atan2(c.now.m[1], c.now.m[0]) * 180 / math.Pi; angle != 0 {
+		c.pdf.turned(angle, x, y, draw)
+	} else {
+		draw()
 	}
-	c.pdf.TransformBegin()
-	c.pdf.TransformRotate(angle, x, y)
-	c.pdf.Text(x, y, s)
-	c.pdf.TransformEnd()
 }
 
 // DrawImage is here for the interface only: no chart holds a bitmap.

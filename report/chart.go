@@ -19,6 +19,7 @@ import (
 // The colours of lines; they are told apart by dash, mark and label as well.
 var (
 	black      = color.NRGBA{A: 255}
+	white      = color.NRGBA{255, 255, 255, 255}
 	blue       = color.NRGBA{0, 114, 178, 255}
 	vermillion = color.NRGBA{213, 94, 0, 255}
 	green      = color.NRGBA{0, 158, 115, 255}

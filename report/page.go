@@ -1,15 +1,9 @@
 package report
 
 import (
-	"bytes"
 	"fmt"
 	"io"
-	"sync"
 	"time"
-
-	"codeberg.org/go-fonts/dejavu/dejavusans"
-	"codeberg.org/go-fonts/dejavu/dejavusansbold"
-	"github.com/jung-kurt/gofpdf"
 
 	"slowpoint/rules"
 )
@@ -31,31 +25,9 @@ const (
 	leading = 1.28 // line height over type size
 )
 
-// common holds the characters that nearly every report needs. Their font is cut out once and shared (as copies): reading and
-// cutting the whole font would take longer than all the rest of a report.
-const common = " !\"#$%&'()*+,-./0123456789:;<=>?@ABCDEFGHIJKLMNOPQRSTUVWXYZ[\\]^_`abcdefghijklmnopqrstuvwxyz{|}~" +
-	"¡£§©«¬®°±²³´µ¶·¹º»¼½¾¿ÀÁÂÃÄÅÆÇÈÉÊËÌÍÎÏÑÒÓÔÕÖ×ØÙÚÛÜÝßàáâãäåæçèéêëìíîïñòóôõö÷øùúûüýÿ–—‘’“”„…•√≈≤≥≠→←↑↓−☐☑✓✗●○■□▲△◆◇×₁₂⁻\uFFFD"
-
-// fontFiles holds a cut-out and a whole font file in each weight; whoever uses one clones it, for the PDF library writes into it.
-var fontFiles = sync.OnceValue(func() (f struct{ cut, whole [2][]byte }) {
-	f.whole = [2][]byte{dejavusans.TTF, dejavusansbold.TTF}
-	for i, ttf := range f.whole {
-		f.cut[i] = gofpdf.UTF8CutFont(bytes.Clone(ttf), common)
-	}
-	return f
-})
-
-var isCommon = sync.OnceValue(func() map[rune]bool {
-	m := map[rune]bool{}
-	for _, r := range common {
-		m[r] = true
-	}
-	return m
-})
-
 // doc is a document being written: a page, a position on it, and what the running titles will say.
 type doc struct {
-	pdf    *gofpdf.Fpdf
+	pdf    *paper
 	head   *Head
 	left   float64 // mm
 	y      float64 // mm from the top of the page
@@ -64,49 +36,18 @@ type doc struct {
 	note   string // of the pages to come: what their numbers are
 	notes  []string
 	unseen unseen
-	letter lettering
-	stroke stroke
-	whole  [2]bool // whether the whole font has been added, regular and bold
-	nest   int     // how deep the bookmarks to come lie below their own level
-	marked int     // the level of the last bookmark; -1: none yet
-}
-
-// lettering is the font that was last set on a page, so that it is not set again for each word.
-type lettering struct {
-	page       int
-	fam, style string
-	size       float64
-}
-
-// stroke is the line that was last set on a page.
-type stroke struct {
-	page int
-	pt   float64
+	nest   int // how deep the bookmarks to come lie below their own level
+	marked int // the level of the last bookmark; -1: none yet
 }
 
 // newDoc opens a document without a page.
 func newDoc(h *Head, title string) *doc {
-	paper := "A4"
-	if h.Paper == "Letter" {
-		paper = "Letter"
+	p := newPaper(h.Paper)
+	p.date, p.creator, p.title = h.Date, flat("slowpoint "+h.Version), flat(title)
+	if p.date.IsZero() {
+		p.date = time.Unix(0, 0)
 	}
-	p := gofpdf.New("P", "mm", paper, "")
-	date := h.Date
-	if date.IsZero() {
-		date = time.Unix(0, 0)
-	}
-	p.SetCreationDate(date.UTC())
-	p.SetModificationDate(date.UTC())
-	p.SetCatalogSort(true)
-	p.SetProducer("gofpdf", true)
-	p.SetCreator(flat("slowpoint "+h.Version), true)
-	p.SetTitle(flat(title), true)
-	p.SetAutoPageBreak(false, 0)
-	for i, b := range fontFiles().cut {
-		p.AddUTF8FontFromBytes(family, [2]string{"", "B"}[i], bytes.Clone(b))
-	}
-	w, _ := p.GetPageSize()
-	return &doc{pdf: p, head: h, left: (w - frameWide) / 2, title: title, note: say("footer not measured"), unseen: unseen{}, marked: -1}
+	return &doc{pdf: p, head: h, left: (p.wide - frameWide) / 2, title: title, note: say("footer not measured"), unseen: unseen{}, marked: -1}
 }
 
 // clean makes text printable and remembers what could not be shown.
@@ -114,7 +55,7 @@ func (d *doc) clean(s string) string { return d.unseen.clean(s) }
 
 // page begins a new page.
 func (d *doc) page() {
-	d.pdf.AddPage()
+	d.pdf.addPage()
 	d.titles, d.notes = append(d.titles, d.title), append(d.notes, d.note)
 	d.y = topY
 }
@@ -128,32 +69,7 @@ func (d *doc) need(h float64) {
 
 // put writes one line of clean text with its baseline at y, black.
 func (d *doc) put(x, y float64, s string, size float64, bold bool) {
-	d.letters(size, bold, s)
-	d.pdf.Text(x, y, s)
-}
-
-// letters sets the font and the colour in which put writes s.
-func (d *doc) letters(size float64, bold bool, s string) {
-	fam, style := family, ""
-	if bold {
-		style = "B"
-	}
-	for _, r := range s {
-		if r > '~' && !isCommon()[r] {
-			fam = family + "whole"
-			if i := btoi(bold); !d.whole[i] {
-				d.pdf.AddUTF8FontFromBytes(fam, style, bytes.Clone(fontFiles().whole[i]))
-				d.whole[i] = true
-			}
-			break
-		}
-	}
-	if f := (lettering{d.pdf.PageNo(), fam, style, size}); f != d.letter {
-		d.pdf.SetFont(fam, style, size)
-		d.pdf.SetFillColor(0, 0, 0) // as the text: then the library leaves the colour alone
-		d.pdf.SetTextColor(0, 0, 0)
-		d.letter = f
-	}
+	d.pdf.text(x, y, s, size, bold, black)
 }
 
 // height of a line of a size, mm.
@@ -214,31 +130,14 @@ func (d *doc) section(s string, level int, keep float64, mark int) {
 // bookmark marks the place in the outline, never more than one level below the last.
 func (d *doc) bookmark(s string, level int) {
 	d.marked = min(level+d.nest, d.marked+1)
-	d.pdf.Bookmark(flat(s), d.marked, d.y)
+	d.pdf.mark(flat(s), d.marked, d.y)
 }
 
 // rule draws a line across from x to x2 at y.
-func (d *doc) rule(x, x2, y, pt float64) {
-	if s := (stroke{d.pdf.PageNo(), pt}); s != d.stroke {
-		d.pdf.SetDrawColor(0, 0, 0)
-		d.pdf.SetLineWidth(pt * mmPerPt)
-		d.pdf.SetDashPattern(nil, 0)
-		d.stroke = s
-	}
-	d.pdf.Line(x, y, x2, y)
-}
-
-// forget is for whoever sets fonts, lines or colours without put and rule: both then set their own again.
-func (d *doc) forget() { d.letter, d.stroke = lettering{}, stroke{} }
+func (d *doc) rule(x, x2, y, pt float64) { d.pdf.line(pencil{pt: pt, color: black}, x, y, x2, y) }
 
 // frame draws a box.
-func (d *doc) frame(x, y, w, h, pt float64) {
-	d.forget()
-	d.pdf.SetDrawColor(0, 0, 0)
-	d.pdf.SetLineWidth(pt * mmPerPt)
-	d.pdf.SetDashPattern(nil, 0)
-	d.pdf.Rect(x, y, w, h, "D")
-}
+func (d *doc) frame(x, y, w, h, pt float64) { d.pdf.frame(pencil{pt: pt, color: black}, x, y, w, h) }
 
 // col is a column of a table.
 type col struct {
@@ -265,10 +164,10 @@ func (d *doc) grouped(cols []col, rows [][]string, size float64, ends func(row i
 	headed := -1
 	start := func(h float64) { // room for h mm, below a header
 		d.need(h + btof(headed < 0)*2*height(size))
-		if headed != d.pdf.PageNo() {
+		if headed != d.pdf.page {
 			d.row(cols, titles, size, true)
 			d.rule(d.left, d.left+total(cols), d.y, 1)
-			headed = d.pdf.PageNo()
+			headed = d.pdf.page
 		}
 	}
 	most := int((bottomY - topY - 20) / height(size))
@@ -395,7 +294,7 @@ func (d *doc) boxed(lines []string, st style) {
 	}
 }
 
-// caught turns a panic of the PDF library into an error: one document less, and the others are written.
+// caught turns a panic while a PDF is made into an error: one document less, and the others are written.
 func caught(err *error) {
 	if r := recover(); r != nil {
 		*err = fmt.Errorf("PDF: %v", r)
@@ -404,13 +303,12 @@ func caught(err *error) {
 
 // finish writes the running titles and page numbers and sends the document.
 func (d *doc) finish(w io.Writer) error {
-	n := d.pdf.PageCount()
+	n := len(d.pdf.sheets)
 	for i := 1; i <= n; i++ {
-		d.pdf.SetPage(i)
-		d.forget() // what the last page had set is not set here
+		d.pdf.page = i
 		d.running(i, n)
 	}
-	return d.pdf.Output(w)
+	return d.pdf.write(w)
 }
 
 // running writes the header and the footer of a page.

@@ -10,7 +10,6 @@ import (
 // sketch draws the section of a product with the slowest place marked; it takes height mm of the page.
 func (d *doc) sketch(p *model.Product, at model.Place, name string, h float64) {
 	d.need(h)
-	defer d.forget()
 	s := section{d: d, p: p, at: at, name: name, x: d.left, y: d.y, h: h, x0: d.left}
 	switch p.Shape {
 	case model.Cylinder, model.Sphere:
@@ -42,11 +41,15 @@ type section struct {
 	x0      float64 // the left edge of the frame
 }
 
+// The lines of a sketch.
+var (
+	thin  = pencil{pt: 0.7, color: black}
+	probe = pencil{pt: 0.9, color: black}
+	heavy = pencil{pt: 1.5, color: black}
+)
+
 func (s *section) line(x, y, x2, y2 float64) {
-	s.d.pdf.SetDrawColor(0, 0, 0)
-	s.d.pdf.SetLineWidth(0.7 * mmPerPt)
-	s.d.pdf.SetDashPattern(nil, 0)
-	s.d.pdf.Line(x, y, x2, y2)
+	s.d.pdf.line(thin, x, y, x2, y2)
 }
 
 // mark is a place in a section with its words.
@@ -68,18 +71,14 @@ func (s *section) marks(to func(model.Place) (float64, float64), right float64, 
 		}
 	}
 	p := s.d.pdf
-	p.SetDrawColor(0, 0, 0)
 	for _, m := range all {
 		if m.probe {
-			p.SetLineWidth(0.9 * mmPerPt)
-			p.Rect(m.x-1.1, m.y-1.1, 2.2, 2.2, "D")
+			p.frame(probe, m.x-1.1, m.y-1.1, 2.2, 2.2)
 			continue
 		}
-		p.SetLineWidth(1.5 * mmPerPt)
-		p.Line(m.x-1.8, m.y-1.8, m.x+1.8, m.y+1.8)
-		p.Line(m.x-1.8, m.y+1.8, m.x+1.8, m.y-1.8)
-		p.SetLineWidth(0.7 * mmPerPt)
-		p.Circle(m.x, m.y, 2.6, "D")
+		p.line(heavy, m.x-1.8, m.y-1.8, m.x+1.8, m.y+1.8)
+		p.line(heavy, m.x-1.8, m.y+1.8, m.x+1.8, m.y-1.8)
+		p.circle(thin, m.x, m.y, 2.6)
 	}
 	if !words {
 		return
@@ -110,11 +109,8 @@ func (s *section) measure(x, y, x2, y2 float64, words string) {
 	if x == x2 {
 		s.line(x-1.2, y, x+1.2, y)
 		s.line(x-1.2, y2, x+1.2, y2)
-		s.d.letters(small, false, words) // before the turn: at its end the page has again what it had before
-		s.d.pdf.TransformBegin()
-		s.d.pdf.TransformRotate(90, x-1.2, (y+y2)/2+w/2)
-		s.d.put(x-1.2, (y+y2)/2+w/2, words, small, false)
-		s.d.pdf.TransformEnd()
+		at := (y+y2)/2 + w/2
+		s.d.pdf.turned(90, x-1.2, at, func() { s.d.put(x-1.2, at, words, small, false) })
 		return
 	}
 	s.line(x, y-1.2, x, y+1.2)
@@ -130,17 +126,15 @@ func (s *section) slab() {
 	x, w := s.x+18, 84.0
 	y, h := s.y+6, s.h-12
 	p := s.d.pdf
-	p.SetDrawColor(0, 0, 0)
-	p.SetLineWidth(1.5 * mmPerPt)
-	p.Line(x, y, x+w, y)
-	p.Line(x, y+h, x+w, y+h)
+	p.line(heavy, x, y, x+w, y)
+	p.line(heavy, x, y+h, x+w, y+h)
 	for _, side := range []float64{x, x + w} { // it goes on: a broken edge
-		p.SetLineWidth(0.7 * mmPerPt)
-		p.MoveTo(side, y)
+		p.pencil(thin)
+		p.moveTo(side, y)
 		for k := 1; k <= 8; k++ {
-			p.LineTo(side+float64(k%2*2-1)*1.2*btof(k < 8), y+h*float64(k)/8)
+			p.lineTo(side+float64(k%2*2-1)*1.2*btof(k < 8), y+h*float64(k)/8)
 		}
-		p.DrawPath("D")
+		p.stroke()
 	}
 	s.d.put(x+2, y-1.5, model.Top.Name, small, false)
 	s.d.put(x+2, y+h+4, model.Underside.Name, small, false)
@@ -154,10 +148,7 @@ func (s *section) slab() {
 func (s *section) round() {
 	r := (s.h - 14) / 2
 	cx, cy := s.x+18+r, s.y+3+r
-	p := s.d.pdf
-	p.SetDrawColor(0, 0, 0)
-	p.SetLineWidth(1.5 * mmPerPt)
-	p.Circle(cx, cy, r, "D")
+	s.d.pdf.circle(heavy, cx, cy, r)
 	s.measure(cx-r, cy+r+3, cx+r, cy+r+3, s.sizeWords(say("size diameter"), s.p.Size.DiameterM, 2*r+16))
 	scale := r / (s.p.Size.DiameterM / 2)
 	s.marks(func(q model.Place) (float64, float64) { return cx + q.UpM*scale, cy }, cx+r+4, true)
@@ -199,19 +190,18 @@ func (s *section) sizeWords(name string, m, room float64) string {
 func (s *section) pot() {
 	x, y, w, h := s.x+18, s.y+4, 60.0, s.h-12
 	p := s.d.pdf
-	p.SetDrawColor(0, 0, 0)
-	p.SetLineWidth(1.5 * mmPerPt)
-	p.MoveTo(x, y)
-	p.LineTo(x, y+h)
-	p.LineTo(x+w, y+h)
-	p.LineTo(x+w, y)
-	p.DrawPath("D")
-	p.SetLineWidth(0.9 * mmPerPt)
-	p.MoveTo(x, y+5)
+	p.pencil(heavy)
+	p.moveTo(x, y)
+	p.lineTo(x, y+h)
+	p.lineTo(x+w, y+h)
+	p.lineTo(x+w, y)
+	p.stroke()
+	p.pencil(probe)
+	p.moveTo(x, y+5)
 	for k := 1; k <= 30; k++ {
-		p.LineTo(x+w*float64(k)/30, y+5+0.6*math.Sin(float64(k)*math.Pi/5))
+		p.lineTo(x+w*float64(k)/30, y+5+0.6*math.Sin(float64(k)*math.Pi/5))
 	}
-	p.DrawPath("D")
+	p.stroke()
 	for i, t := range wrap(say("sketch stirred"), w-8, small, false) {
 		s.d.put(x+4, y+h/2+float64(i)*height(small), t, small, false)
 	}

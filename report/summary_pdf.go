@@ -23,7 +23,7 @@ func OnePDF(w io.Writer, h *Head, rows []Row, each func(func(*Product) error) er
 	d.nest = 1
 	if err := each(func(p *Product) error {
 		d.product(p)
-		return d.pdf.Error()
+		return nil
 	}); err != nil {
 		return err
 	}
