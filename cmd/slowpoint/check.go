@@ -54,6 +54,10 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 	if err != nil {
 		return err
 	}
+	if !o.noPDF {
+		plan.Problems = append(plan.Problems, unprinted(plan)...)
+		plan.Problems.Sort(plan.Sheets)
+	}
 	head, err := headOf(plan, o)
 	if err != nil {
 		return err
@@ -75,6 +79,36 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 	tellProblems(cmd.ErrOrStderr(), head.Problems)
 	r.tell(cmd.OutOrStdout())
 	return r.exit()
+}
+
+// unprinted warns of the names that the PDF cannot show in full: those of products, steps and limits, and what Plan says.
+func unprinted(plan *workbook.Plan) cell.Errors {
+	var found cell.Errors
+	look := func(at cell.Ref, field, name string) {
+		if list := report.Unprinted(name); list != "" {
+			found.Add(plan.Locate(cell.Error{At: at, Level: cell.Warning, Field: field, Typed: name,
+				Msg:  "holds characters that the font of the PDF lacks (" + list + "); it prints \uFFFD for each",
+				Hint: "the screen, report.txt, results.xlsx and results.json keep the name as it is typed; for the PDF add a name in Latin, Greek or Cyrillic letters"}))
+		}
+	}
+	steps := map[cell.Ref]bool{}
+	for i := range plan.Products {
+		p := &plan.Products[i]
+		look(p.At, "Product", p.Name)
+		for k := range p.Steps {
+			if s := &p.Steps[k]; !steps[s.At] {
+				steps[s.At] = true
+				look(s.At, "Step", s.Name)
+			}
+		}
+	}
+	for i := range plan.Limits {
+		look(plan.Limits[i].At, "Limit", plan.Limits[i].Name)
+	}
+	for _, it := range plan.Items {
+		look(it.At, "Value", it.Value)
+	}
+	return found
 }
 
 // readPlan reads the plan or the demo and says where its results go.
