@@ -45,7 +45,7 @@ func churchillBernstein(re, pr float64) float64 {
 // (Melissari & Argyropoulos 2005, Int. J. Heat Mass Transfer; year and journal from memory).
 // Above Re 50000 the value there is kept, which is low.
 func sphereForced(re, pr float64) float64 {
-	return 2 + 0.47*math.Sqrt(math.Min(re, 5e4))*math.Pow(pr, 0.36)
+	return 2 + 0.47*math.Sqrt(min(re, 5e4))*math.Pow(pr, 0.36)
 }
 
 // plateForced is the mean Nusselt number of a flat plate along a stream, on its length, with the laminar formula throughout

@@ -300,7 +300,7 @@ func (a *axis) step(mem, tmp *slab, p Properties, lo, up film) *axisStep {
 		if math.IsInf(f.u, 1) {
 			return heldBiot
 		}
-		return math.Min(f.u*a.radiusM/p.KWmK*a.weight(), heldBiot)
+		return min(f.u*a.radiusM/p.KWmK*a.weight(), heldBiot)
 	}
 	s := &axisStep{rate: mem.take(n), gUp: mem.take(n), gLo: mem.take(n), b: mem.take(n * n)}
 	var d, g []float64

@@ -59,9 +59,9 @@ func (b *body) coord(p Place) coord {
 		case lumped:
 			x[a] = 0
 		case planeFull:
-			x[a] = math.Max(-1, math.Min(1, x[a]/b.radii[a]))
+			x[a] = max(-1, min(1, x[a]/b.radii[a]))
 		default:
-			x[a] = math.Min(1, math.Abs(x[a])/b.radii[a])
+			x[a] = min(1, math.Abs(x[a])/b.radii[a])
 		}
 	}
 	return x
@@ -91,7 +91,7 @@ func (b *body) range_(s snapshot) (lo, hi float64) {
 	s.grid(b.buf)
 	lo, hi = b.buf[0], b.buf[0]
 	for _, c := range b.buf {
-		lo, hi = math.Min(lo, c), math.Max(hi, c)
+		lo, hi = min(lo, c), max(hi, c)
 	}
 	return lo, hi
 }
@@ -132,20 +132,22 @@ func (b *body) rival(first int, sign, reach, best float64) int {
 	stride := b.strides()
 	found, most := -1, sign*best-flatK
 	level := sign*b.buf[first] + reach
-	i := -1
+	i, n := 0, len(b.nodes.x[2])
 	for g0 := range b.nodes.x[0] {
 		for g1 := range b.nodes.x[1] {
-			for g2 := range b.nodes.x[2] {
-				i++
-				if c := sign * b.buf[i]; c > level || i == first {
+			row := b.buf[i : i+n]
+			for g2, c := range row {
+				c *= sign
+				if c > level || g2 > 0 && sign*row[g2-1] < c || g2+1 < n && sign*row[g2+1] < c || i+g2 == first {
 					continue
 				}
-				if g := [3]int{g0, g1, g2}; b.deeper(i, g, stride, sign) {
-					if p := b.promise(i, g, stride, sign); p < most {
-						found, most = i, p
+				if g := [3]int{g0, g1, g2}; b.deeper(i+g2, g, stride, sign) {
+					if p := b.promise(i+g2, g, stride, sign); p < most {
+						found, most = i+g2, p
 					}
 				}
 			}
+			i += n
 		}
 	}
 	return found
@@ -200,6 +202,13 @@ func (b *body) lowest() (lo, hi int) {
 
 // nearest gives the node nearest to the centre of those not above level (sign 1) or not below it (-1); there is one.
 func (b *body) nearest(level, sign float64) int {
+	if len(b.nodes.x[1]) == 1 { // one axis
+		for _, i := range b.order {
+			if sign*(b.buf[i]-level) <= 0 {
+				return i
+			}
+		}
+	}
 	best := len(b.rank) - 1
 	for i, c := range b.buf {
 		if sign*(c-level) <= 0 && b.rank[i] < best {
@@ -297,7 +306,7 @@ func valleyOf(x, f [3]float64) valley {
 	left, right := (f[1]-f[0])/(x[1]-x[0]), (f[2]-f[1])/(x[2]-x[1])
 	v.bend = 2 * (right - left) / (x[2] - x[0])
 	if v.bend > 0 {
-		v.start = math.Max(v.lo, math.Min(v.hi, (x[0]+x[1])/2-left/v.bend))
+		v.start = max(v.lo, min(v.hi, (x[0]+x[1])/2-left/v.bend))
 	}
 	return v
 }
@@ -346,12 +355,12 @@ func (h *History) Scan() *Scan {
 // stepTimes gives instants between two ends: dense after the change at from, then evenly, with the knots of the media.
 func stepTimes(from, to, settle float64, knots []float64) []float64 {
 	length := to - from
-	wide := math.Max(length/48, settle/4)
+	wide := max(length/48, settle/4)
 	times := []float64{from}
 	for tau, d := settle/16, settle/16; tau < length; tau += d {
 		times = append(times, from+tau)
-		d = math.Min(d*1.3, wide)
-		d = math.Max(d, settle/16)
+		d = min(d*1.3, wide)
+		d = max(d, settle/16)
 	}
 	times = append(times, to)
 	for _, k := range knots {
@@ -446,7 +455,7 @@ func (b *body) parabola(x coord, a int, d, best float64, score func(Place) float
 		low = 0
 	}
 	try := func(c float64) float64 {
-		c = math.Max(low, math.Min(1, c))
+		c = max(low, min(1, c))
 		y := x
 		y[a] = c
 		s := score(b.place(y))
@@ -473,11 +482,13 @@ func (b *body) parabola(x coord, a int, d, best float64, score func(Place) float
 
 // Sample fills the courses of the results: every multiple of everyS and every change of step.
 func (h *History) Sample(everyS float64) Samples {
+	end := h.EndS()
 	var times []float64
-	if end := h.EndS(); everyS > 0 {
-		for k := 0; float64(k)*everyS < end; k++ {
-			times = append(times, float64(k)*everyS)
-		}
+	if everyS > 0 && end/everyS < 1e7 {
+		times = make([]float64, 0, int(end/everyS)+len(h.Spans)+2)
+	}
+	for k := 0; everyS > 0 && float64(k)*everyS < end; k++ {
+		times = append(times, float64(k)*everyS)
 	}
 	if len(times) == 0 {
 		times = append(times, 0)
@@ -487,13 +498,14 @@ func (h *History) Sample(everyS float64) Samples {
 	}
 	s := Samples{TimesS: near(rising(times))}
 	n := len(s.TimesS)
+	courses := make([]float64, (len(h.Points)+3)*n)
 	s.Points = make([][]float64, len(h.Points))
 	first := 1 // the centre is a node, read below
 	if h.Recorded {
 		first = 0
 	}
 	for i := range h.Points {
-		s.Points[i] = make([]float64, n)
+		s.Points[i] = courses[i*n : (i+1)*n : (i+1)*n]
 		if i >= first {
 			h.Course(h.Points[i].Place, s.TimesS, s.Points[i])
 		}
@@ -501,7 +513,8 @@ func (h *History) Sample(everyS float64) Samples {
 	if h.Recorded {
 		return s
 	}
-	s.Coldest, s.Hottest, s.Mean = make([]float64, n), make([]float64, n), make([]float64, n)
+	courses = courses[len(h.Points)*n:]
+	s.Coldest, s.Hottest, s.Mean = courses[:n:n], courses[n:2*n:2*n], courses[2*n:]
 	s.ColdestAt, s.HottestAt = make([]Place, n), make([]Place, n)
 	if f, ok := h.field.(*tensor); ok && f.single() && f.axes[0].kind != lumped {
 		f.sampleLine(h, &s)

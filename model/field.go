@@ -189,53 +189,56 @@ func (f *tensor) segments(cs *chainStep, st *tensorStep, now []float64) {
 	n, m := f.size(), len(cs.media)
 	t0 := f.end()
 	f.segs = slices.Grow(f.segs, len(cs.knots))
-	var decay []float64 // of every mode over one stretch of length long
+	mark := f.tmp.free
+	level, decay := f.tmp.take(m), f.tmp.take(n) // the media at the knot; what is left of every mode after one stretch of length long
 	long := math.NaN()
+	reads := make([]cursor, m)
+	for g := range cs.media {
+		reads[g] = cursor{x: cs.media[g].TimesS, y: cs.media[g].C}
+		level[g] = cs.media[g].at(0)
+	}
+	var last *tensorSeg
 	for k, from := range cs.knots {
 		to := cs.durS
 		if k+1 < len(cs.knots) {
-			to = math.Min(to, cs.knots[k+1])
+			to = min(to, cs.knots[k+1])
 		}
 		if to <= from && k > 0 {
 			break
 		}
-		sg := tensorSeg{t0: t0 + from, t1: t0 + to, step: st, level: f.mem.take(m), slope: f.mem.take(m)}
-		for g := range cs.media {
-			a, b := cs.media[g].at(from), cs.media[g].at(to)
-			sg.level[g] = a
-			if to > from {
-				sg.slope[g] = (b - a) / (to - from)
+		sg := tensorSeg{t0: t0 + from, t1: t0 + to, step: st, level: f.mem.take(m), slope: f.mem.take(m), c: now}
+		copy(sg.level, level)
+		for g := range reads {
+			if len(reads[g].x) > 1 && to > from {
+				level[g] = reads[g].to(to)
+				sg.slope[g] = (level[g] - sg.level[g]) / (to - from)
+			}
+			w := st.groups[g].w
+			if last == nil {
+				for i, s := range st.groups[g].s {
+					now[i] -= s*sg.level[g] - w[i]*sg.slope[g]
+				}
+			} else if turn := sg.slope[g] - last.slope[g]; turn != 0 { // the level goes on, the slope changes
+				for i := range now {
+					now[i] += w[i] * turn
+				}
 			}
 		}
-		for g, r := range st.groups {
-			level, slope := sg.level[g], sg.slope[g]
-			for i, s := range r.s {
-				now[i] -= s*level - r.w[i]*slope
-			}
-		}
-		sg.c = now
 		f.segs = append(f.segs, sg)
 		if to >= cs.durS {
 			break
 		}
+		last = &f.segs[len(f.segs)-1]
 		if d := to - from; d != long { // courses mostly have even steps
 			long = d
-			if decay == nil {
-				decay = f.tmp.take(n)
-			}
 			st.eachRate(func(i int, rate float64) { decay[i] = math.Exp(-rate * d) })
 		}
 		now = f.mem.take(n)
-		for i, c := range sg.c {
+		for i, c := range last.c {
 			now[i] = c * decay[i]
 		}
-		for g, r := range st.groups {
-			level, slope := sg.level[g]+sg.slope[g]*long, sg.slope[g]
-			for i, s := range r.s {
-				now[i] += s*level - r.w[i]*slope
-			}
-		}
 	}
+	f.tmp.free = mark
 }
 
 // at is the medium at t seconds from the start of the step.
@@ -500,7 +503,7 @@ func (f *tensor) course(x coord, times, out []float64) {
 				lin[0], lin[1] = append(lin[0], s), append(lin[1], w)
 			}
 		}
-		tau := math.Min(math.Max(t-sg.t0, 0), sg.t1-sg.t0)
+		tau := min(max(t-sg.t0, 0), sg.t1-sg.t0)
 		sum := 0.0
 		for g := range st.groups {
 			sum += lin[0][g]*(sg.level[g]+sg.slope[g]*tau) - lin[1][g]*sg.slope[g]
@@ -555,7 +558,7 @@ func (f *tensor) at(t float64) snapshot {
 		s.amp = make([]float64, f.size())
 	}
 	s.sg = &f.segs[f.segAt(t)]
-	s.tau = math.Min(math.Max(t-s.sg.t0, 0), s.sg.t1-s.sg.t0)
+	s.tau = min(max(t-s.sg.t0, 0), s.sg.t1-s.sg.t0)
 	s.keep = f.decaying(s.sg, s.tau, s.amp)
 	return s
 }

@@ -27,7 +27,7 @@ func (c *filmCase) lengthM() float64 {
 	case Stirred: // the cube of the same volume
 		return math.Cbrt(c.size.VolumeM3)
 	}
-	return math.Max(math.Max(c.size.ThicknessM, c.size.WidthM), math.Max(c.size.LengthM, c.size.DiameterM))
+	return max(max(c.size.ThicknessM, c.size.WidthM), max(c.size.LengthM, c.size.DiameterM))
 }
 
 func (c *filmCase) at() string {

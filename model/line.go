@@ -54,7 +54,7 @@ func (w *lineSampler) moveTo(t, d float64) (mean float64) {
 		w.sg = &w.f.segs[w.f.segAt(t)]
 	}
 	sg, st := w.sg, w.sg.step
-	tau := math.Min(math.Max(t-sg.t0, 0), sg.t1-sg.t0)
+	tau := min(max(t-sg.t0, 0), sg.t1-sg.t0)
 	w.tau = tau
 	if fresh || w.carried == anew {
 		w.f.gridValues(st)

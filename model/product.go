@@ -136,7 +136,7 @@ func (f *product) course(x coord, times, out []float64) {
 				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
 			}
 		}
-		tau := math.Min(math.Max(t-st.t0, 0), st.t1-st.t0)
+		tau := min(max(t-st.t0, 0), st.t1-st.t0)
 		var keep [3]int
 		for a := range f.axes {
 			keep[a] = decays(st.ax[a].rate, tau, e[a][:f.axes[a].n])
@@ -174,7 +174,7 @@ func (f *product) at(t float64) snapshot {
 	s := &f.now
 	st := f.stepAt(t)
 	s.st = st
-	tau := math.Min(math.Max(t-st.t0, 0), st.t1-st.t0)
+	tau := min(max(t-st.t0, 0), st.t1-st.t0)
 	for len(s.amp) < len(st.terms) {
 		var x, line [3][]float64
 		for a := range x {

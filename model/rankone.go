@@ -107,7 +107,7 @@ func secularRoot(d, v []float64, rho, sum float64, j int) (from int, delta float
 		} else {
 			hi = x
 		}
-		if math.Abs(s) <= 4e-16*size || hi-lo <= 2e-16*math.Max(math.Abs(lo), math.Abs(hi)) {
+		if math.Abs(s) <= 4e-16*size || hi-lo <= 2e-16*max(math.Abs(lo), math.Abs(hi)) {
 			break
 		}
 		dl := (d[j] - d[from]) - x
@@ -115,7 +115,7 @@ func secularRoot(d, v []float64, rho, sum float64, j int) (from int, delta float
 		a := (dl+dr)*s - dl*dr*(left+right)
 		b := dl * dr * s
 		c := s - dl*left - dr*right
-		disc := math.Sqrt(math.Max(0, a*a-4*b*c))
+		disc := math.Sqrt(max(0, a*a-4*b*c))
 		var eta float64
 		if a <= 0 {
 			eta = (a - disc) / (2 * c)
@@ -126,10 +126,11 @@ func secularRoot(d, v []float64, rho, sum float64, j int) (from int, delta float
 		if !(next > lo && next < hi) {
 			next = (lo + hi) / 2
 		}
-		if next == x {
+		done := math.Abs(next-x) <= 1e-8*math.Abs(next) // the iteration squares its error
+		x = next
+		if done {
 			break
 		}
-		x = next
 	}
 	return from, x
 }

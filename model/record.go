@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 )
 
@@ -83,20 +84,14 @@ func NewRecord(spans []Span, traces []Trace, medium *Trace) (*History, error) {
 
 // at is the straight-line value of a trace at t.
 func (tr *Trace) at(t float64) float64 {
-	i := sort.SearchFloat64s(tr.TimesS, t)
-	switch {
-	case i == 0:
-		return tr.C[0]
-	case i == len(tr.C):
-		return tr.C[i-1]
-	}
-	f := (t - tr.TimesS[i-1]) / (tr.TimesS[i] - tr.TimesS[i-1])
-	return tr.C[i-1] + f*(tr.C[i]-tr.C[i-1])
+	return lineAt(tr.TimesS, tr.C, t)
 }
 
 // rising sorts times and drops repeats.
 func rising(t []float64) []float64 {
-	sort.Float64s(t)
+	if !slices.IsSorted(t) {
+		slices.Sort(t)
+	}
 	out := t[:0]
 	for i, x := range t {
 		if i == 0 || x > out[len(out)-1] {
@@ -134,6 +129,34 @@ func humidityAt(spans []Span, t float64) float64 {
 
 // lineAt is the straight-line value between points; the ends are kept outside.
 func lineAt(x, y []float64, at float64) float64 {
-	tr := Trace{TimesS: x, C: y}
-	return tr.at(at)
+	c := cursor{x: x, y: y}
+	return c.to(at)
+}
+
+// cursor reads a course of straight lines at times that mostly rise.
+type cursor struct {
+	x, y []float64
+	i    int // the last point found at or after a time
+}
+
+// to is the straight-line value at a time; the ends are kept outside.
+func (c *cursor) to(at float64) float64 {
+	n := len(c.x)
+	here := func(i int) bool { return (i == 0 || c.x[i-1] < at) && (i == n || at <= c.x[i]) }
+	if !here(c.i) {
+		if c.i < n && here(c.i+1) {
+			c.i++
+		} else {
+			c.i = sort.SearchFloat64s(c.x, at)
+		}
+	}
+	i := c.i
+	switch {
+	case i == 0:
+		return c.y[0]
+	case i == n:
+		return c.y[i-1]
+	}
+	f := (at - c.x[i-1]) / (c.x[i] - c.x[i-1])
+	return c.y[i-1] + f*(c.y[i]-c.y[i-1])
 }

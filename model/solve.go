@@ -98,10 +98,10 @@ func (s *solver) layOut() {
 	alpha := q.KWmK / (q.RhoKgM3 * q.CJkgK)
 	s.settle = settleS
 	for a := 0; a < s.used; a++ {
-		s.settle = math.Min(s.settle, 0.02*s.radii[a]*s.radii[a]/alpha)
+		s.settle = min(s.settle, 0.02*s.radii[a]*s.radii[a]/alpha)
 	}
 	for i := range s.steps {
-		s.settle = math.Min(s.settle, s.steps[i].DurationS/4)
+		s.settle = min(s.settle, s.steps[i].DurationS/4)
 	}
 	for a := 0; a < s.used; a++ {
 		s.foMin[a] = alpha * s.settle / (s.radii[a] * s.radii[a])
@@ -336,11 +336,11 @@ func (s *solver) ready(body *body, span *Span, axes [3]*axis, nd *nodes, food [2
 	cold, hot := food[0], food[1] // first guess: the food comes all the way to its media
 	for _, e := range exposures(s.product.Shape, st) {
 		for _, m := range s.raised(st, e, nil).C {
-			cold, hot = math.Min(cold, m), math.Max(hot, m)
+			cold, hot = min(cold, m), max(hot, m)
 		}
 	}
 	for try := 0; ; try++ {
-		mean := (math.Min(cold, 100) + math.Min(hot, 100)) / 2
+		mean := (min(cold, 100) + min(hot, 100)) / 2
 		cs := s.film(span, mean, within)
 		if try == 2 || !s.searches(st) {
 			return cs
@@ -351,7 +351,7 @@ func (s *solver) ready(body *body, span *Span, axes [3]*axis, nd *nodes, food [2
 		cold, hot = food[0], food[1]
 		for k := 1; k <= 8; k++ {
 			a, b := body.range_(f.at(span.StartS + within*float64(k*k)/64))
-			cold, hot = math.Min(cold, a), math.Max(hot, b)
+			cold, hot = min(cold, a), max(hot, b)
 		}
 		if f == s.main {
 			f.pop()
@@ -401,7 +401,7 @@ func (s *solver) film(span *Span, meanC, within float64) *chainStep {
 		fc := filmCase{shape: s.product.Shape, size: s.product.Size, foodC: meanC, altitudeM: st.AltitudeM}
 		if e.filmDepends() {
 			fc.mediumC = m.meanC(within)
-			fc.foodC = fc.mediumC + math.Max(-filmK, math.Min(filmK, meanC-fc.mediumC))
+			fc.foodC = fc.mediumC + max(-filmK, min(filmK, meanC-fc.mediumC))
 		}
 		if e.AirMS != nil {
 			fc.airMS = *e.AirMS
@@ -422,7 +422,7 @@ func (s *solver) film(span *Span, meanC, within float64) *chainStep {
 		f := on(nil)
 		if f.group >= 0 {
 			heat := span.Props.RhoKgM3 * span.Props.CJkgK * s.product.Size.VolumeM3
-			cs.lumpW = math.Min(f.u, 1e6) * s.product.Size.AreaM2 / heat
+			cs.lumpW = min(f.u, 1e6) * s.product.Size.AreaM2 / heat
 			cs.lumpG = []float64{cs.lumpW}
 		}
 		return cs
@@ -478,8 +478,8 @@ func thinned(m Course, durS float64) Course {
 			out.TimesS, out.C = append(out.TimesS, m.TimesS[from]), append(out.C, m.C[from])
 		}
 		t := m.TimesS[i] - m.TimesS[from]
-		low = math.Max(low, (m.C[i]-thinK-m.C[from])/t)
-		high = math.Min(high, (m.C[i]+thinK-m.C[from])/t)
+		low = max(low, (m.C[i]-thinK-m.C[from])/t)
+		high = min(high, (m.C[i]+thinK-m.C[from])/t)
 		if m.TimesS[i] >= durS {
 			out.TimesS, out.C = append(out.TimesS, m.TimesS[i]), append(out.C, m.C[i])
 			return out
@@ -500,7 +500,7 @@ func (m *Course) meanC(durS float64) float64 {
 	}
 	sum, last, lastC := 0.0, 0.0, m.C[0]
 	for i, t := range m.TimesS {
-		t = math.Min(t, durS)
+		t = min(t, durS)
 		c := lineAt(m.TimesS, m.C, t)
 		sum += (t - last) * (c + lastC) / 2
 		last, lastC = t, c
@@ -520,7 +520,7 @@ func (s *solver) raised(st *Step, e *Exposure, span *Span) Course {
 	}
 	low := math.Inf(1)
 	for _, c := range m.C {
-		low = math.Min(low, c)
+		low = min(low, c)
 	}
 	if low >= *tf {
 		return m
@@ -538,7 +538,7 @@ func (s *solver) raised(st *Step, e *Exposure, span *Span) Course {
 			out.TimesS = append(out.TimesS, m.TimesS[i-1]+(t-m.TimesS[i-1])*(*tf-m.C[i-1])/(c-m.C[i-1]))
 			out.C = append(out.C, *tf)
 		}
-		out.TimesS, out.C = append(out.TimesS, t), append(out.C, math.Max(c, *tf))
+		out.TimesS, out.C = append(out.TimesS, t), append(out.C, max(c, *tf))
 	}
 	return out
 }
@@ -622,21 +622,23 @@ func (s *solver) estimate(h *History, more int) {
 	for i := range h.Spans {
 		sp := &h.Spans[i]
 		for _, from := range s.turns(i) {
-			for tau := s.settle; ; tau *= 1.6 {
-				t := math.Min(sp.StartS+from+tau, sp.EndS)
+			for tau := s.settle; ; tau *= 1.7 {
+				t := min(sp.StartS+from+tau, sp.EndS)
 				fine.at(t).grid(a)
 				low.at(t).grid(b)
+				now := 0.0
 				for k := range a {
-					worst = math.Max(worst, math.Abs(a[k]-b[k]))
+					now = max(now, math.Abs(a[k]-b[k]))
 				}
-				if t == sp.EndS || from > 0 && tau > 4*s.settle {
+				worst = max(worst, now)
+				if t == sp.EndS || tau > 4*s.settle && (from > 0 || now < worst/16) { // differences decay
 					break
 				}
 			}
 		}
 	}
 	swap(wide, mem)
-	h.ErrorK = math.Max(worst/fewerWorse, 1e-5)
+	h.ErrorK = max(worst/fewerWorse, 1e-5)
 	for _, cs := range s.chain {
 		if len(cs.knots) > 1 {
 			h.ErrorK += thinK
@@ -658,13 +660,18 @@ func (s *solver) turns(step int) []float64 {
 	type turn struct{ at, size float64 }
 	var all []turn
 	for _, k := range cs.knots[1:] {
-		size := 0.0
-		for g := range cs.media {
-			m := &cs.media[g]
-			before, after := m.at(k)-m.at(k-s.settle), m.at(k+s.settle)-m.at(k)
-			size = math.Max(size, math.Abs(after-before))
+		all = append(all, turn{at: k})
+	}
+	for g := range cs.media {
+		m := &cs.media[g]
+		if len(m.TimesS) < 2 {
+			continue
 		}
-		all = append(all, turn{k, size})
+		before, here, after := cursor{x: m.TimesS, y: m.C}, cursor{x: m.TimesS, y: m.C}, cursor{x: m.TimesS, y: m.C}
+		for i, t := range all {
+			bend := before.to(t.at-s.settle) + after.to(t.at+s.settle) - 2*here.to(t.at)
+			all[i].size = max(t.size, math.Abs(bend))
+		}
 	}
 	slices.SortStableFunc(all, func(a, b turn) int { return cmp.Compare(b.size, a.size) })
 	for _, t := range all[:min(len(all), mostTurns)] {
@@ -698,7 +705,7 @@ func (s *solver) hulls(h *History) {
 	for _, cs := range s.chain {
 		for g := range cs.media {
 			for _, c := range cs.media[g].C {
-				lo, hi = math.Min(lo, c), math.Max(hi, c)
+				lo, hi = min(lo, c), max(hi, c)
 			}
 		}
 		h.hull = append(h.hull, [2]float64{lo, hi})

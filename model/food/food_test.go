@@ -1,56 +1,16 @@
 package food
 
 import (
-	"encoding/csv"
 	"errors"
 	"math"
-	"os"
-	"path/filepath"
-	"strconv"
 	"strings"
 	"testing"
 
 	"pgregory.net/rapid"
 
 	"slowpoint/model"
+	"slowpoint/testdata/published"
 )
-
-// published reads testdata/published/NAME: heading and rows as maps.
-func published(t *testing.T, name string) []map[string]string {
-	t.Helper()
-	f, err := os.Open(filepath.Join("..", "..", "testdata", "published", name))
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer f.Close()
-	r := csv.NewReader(f)
-	r.Comment = '#'
-	rows, err := r.ReadAll()
-	if err != nil {
-		t.Fatal(err)
-	}
-	var out []map[string]string
-	for _, row := range rows[1:] {
-		m := map[string]string{}
-		for i, h := range rows[0] {
-			m[h] = row[i]
-		}
-		out = append(out, m)
-	}
-	if len(out) == 0 {
-		t.Fatalf("%s has no rows", name)
-	}
-	return out
-}
-
-func number(t *testing.T, s string) float64 {
-	t.Helper()
-	x, err := strconv.ParseFloat(s, 64)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return x
-}
 
 // near fails unless got is within tol of want.
 func near(t *testing.T, what string, got, want, tol float64) {
@@ -112,7 +72,7 @@ func TestComponentModel(t *testing.T) {
 }
 
 func TestFoodsAsPredictedIndependently(t *testing.T) {
-	rows := published(t, "food_predictions.csv")
+	rows := published.Rows(t, "food_predictions.csv")
 	if len(rows) != len(Foods) {
 		t.Fatalf("%d predictions for %d foods", len(rows), len(Foods))
 	}
@@ -126,10 +86,10 @@ func TestFoodsAsPredictedIndependently(t *testing.T) {
 			t.Errorf("%s: no composition in words", r["food"])
 		}
 		for _, at := range []string{"20", "60"} {
-			p := m.Props(number(t, at))
-			near(t, r["food"]+" density "+at, p.RhoKgM3, number(t, r["rho"+at]), 0.11)
-			near(t, r["food"]+" conductivity "+at, p.KWmK, number(t, r["k_levy"+at]), 1.1e-4)
-			near(t, r["food"]+" specific heat "+at, p.CJkgK, number(t, r["c"+at]), 1.1)
+			p := m.Props(published.Number(t, at))
+			near(t, r["food"]+" density "+at, p.RhoKgM3, published.Number(t, r["rho"+at]), 0.11)
+			near(t, r["food"]+" conductivity "+at, p.KWmK, published.Number(t, r["k_levy"+at]), 1.1e-4)
+			near(t, r["food"]+" specific heat "+at, p.CJkgK, published.Number(t, r["c"+at]), 1.1)
 		}
 	}
 }
@@ -148,14 +108,14 @@ func TestCopyErrors(t *testing.T) {
 
 func TestPublishedSpecificHeats(t *testing.T) {
 	sum, worst, n := 0.0, 0.0, 0
-	for _, r := range published(t, "ashrae_specific_heat.csv") {
+	for _, r := range published.Rows(t, "ashrae_specific_heat.csv") {
 		// The printed column counts fibre twice: once within total carbohydrate, once as fibre. To check the polynomials the test does the
 		// same; the program does not.
 		m := mix{}
 		for i, col := range []string{"water", "protein", "fat", "carbohydrate_total", "fibre", "ash"} {
-			m.x[i] = number(t, r[col]) / 100
+			m.x[i] = published.Number(t, r[col]) / 100
 		}
-		d := m.specificHeat(20)/1000 - number(t, r["c"])
+		d := m.specificHeat(20)/1000 - published.Number(t, r["c"])
 		sum, worst, n = sum+d*d, math.Max(worst, math.Abs(d)), n+1
 		if math.Abs(d) > 0.0055 { // printed to 0.01
 			t.Logf("%s: %.4f, printed %s", r["food"], m.specificHeat(20)/1000, r["c"])

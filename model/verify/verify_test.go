@@ -1,7 +1,6 @@
 package verify
 
 import (
-	"encoding/csv"
 	"encoding/json"
 	"math"
 	"os"
@@ -11,6 +10,7 @@ import (
 	"testing"
 
 	"slowpoint/model"
+	"slowpoint/testdata/published"
 )
 
 func TestCases(t *testing.T) {
@@ -73,40 +73,6 @@ func TestCasesCanFail(t *testing.T) {
 	}
 }
 
-// published reads testdata/published/NAME as maps by heading.
-func published(t *testing.T, name string) []map[string]string {
-	t.Helper()
-	f, err := os.Open(filepath.Join("..", "..", "testdata", "published", name))
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer f.Close()
-	r := csv.NewReader(f)
-	r.Comment = '#'
-	rows, err := r.ReadAll()
-	if err != nil || len(rows) < 2 {
-		t.Fatalf("%s: %d rows, %v", name, len(rows), err)
-	}
-	var out []map[string]string
-	for _, row := range rows[1:] {
-		m := map[string]string{}
-		for i, h := range rows[0] {
-			m[h] = row[i]
-		}
-		out = append(out, m)
-	}
-	return out
-}
-
-func number(t *testing.T, s string) float64 {
-	t.Helper()
-	x, err := strconv.ParseFloat(s, 64) // reads inf too
-	if err != nil {
-		t.Fatal(err)
-	}
-	return x
-}
-
 // worst keeps the largest error of a test and fails at each one beyond the tolerance.
 type worst struct {
 	err  float64
@@ -153,12 +119,12 @@ const (
 func TestSeries(t *testing.T) {
 	var w worst
 	for _, file := range []string{"series_checks.csv", "series.csv"} {
-		for _, r := range published(t, file) {
+		for _, r := range published.Rows(t, file) {
 			const radius = 0.037
-			p, end := oneStep(shapeOf[r["geometry"]], radius, number(t, r["Bi"]), number(t, r["Fo"]))
+			p, end := oneStep(shapeOf[r["geometry"]], radius, published.Number(t, r["Bi"]), published.Number(t, r["Fo"]))
 			h := solve(t, p)
 			s, i := last(h)
-			degrees := func(col string) float64 { return chillToC + (chillFromC-chillToC)*number(t, r[col]) }
+			degrees := func(col string) float64 { return chillToC + (chillFromC-chillToC)*published.Number(t, r[col]) }
 			w.hold(t, p.Name+": centre", h.At(model.Place{}, end), degrees("theta_centre"), oneAxisK)
 			w.hold(t, p.Name+": mean", s.Mean[i], degrees("theta_mean"), oneAxisK)
 			w.hold(t, p.Name+": surface", h.At(model.Place{UpM: radius}, end), degrees("theta_surface"), oneAxisK)
@@ -171,31 +137,31 @@ func TestSeries(t *testing.T) {
 
 func TestProductsOfSeries(t *testing.T) {
 	var w worst
-	for _, r := range published(t, "product_solutions.csv") {
+	for _, r := range published.Rows(t, "product_solutions.csv") {
 		size, tol := model.Size{DiameterM: 0.1, LengthM: 0.15}, twoAxesK
 		if r["shape"] == "brick" {
 			size, tol = model.Size{ThicknessM: 0.06, WidthM: 0.1, LengthM: 0.2}, threeAxesK
 		}
-		end := number(t, r["time_s"])
+		end := published.Number(t, r["time_s"])
 		p := Problem{r["shape"] + " h " + r["h"] + " after " + r["time_s"], model.Product{Name: "p", Shape: shapeOf[r["shape"]], Size: size, Food: material(tested), StartC: chillFromC},
-			[]model.Step{step("chill", end, exposure(number(t, r["h"]), chillToC))}}
+			[]model.Step{step("chill", end, exposure(published.Number(t, r["h"]), chillToC))}}
 		h := solve(t, p)
 		s, i := last(h)
-		w.hold(t, p.Name+": centre", h.At(model.Place{}, end), number(t, r["centre_C"]), tol)
-		w.hold(t, p.Name+": centre by theta", h.At(model.Place{}, end), chillToC+(chillFromC-chillToC)*number(t, r["theta_centre"]), tol)
-		w.hold(t, p.Name+": mean", s.Mean[i], chillToC+(chillFromC-chillToC)*number(t, r["theta_mean"]), tol)
+		w.hold(t, p.Name+": centre", h.At(model.Place{}, end), published.Number(t, r["centre_C"]), tol)
+		w.hold(t, p.Name+": centre by theta", h.At(model.Place{}, end), chillToC+(chillFromC-chillToC)*published.Number(t, r["theta_centre"]), tol)
+		w.hold(t, p.Name+": mean", s.Mean[i], chillToC+(chillFromC-chillToC)*published.Number(t, r["theta_mean"]), tol)
 	}
 	w.log(t)
 }
 
 func TestHalfSpace(t *testing.T) {
 	var w worst
-	for _, r := range published(t, "semi_infinite.csv") {
+	for _, r := range published.Rows(t, "semi_infinite.csv") {
 		for col, h := range map[string]float64{"held": held, "h25": 25, "h200": 200} {
-			x, end := number(t, r["x_m"]), number(t, r["time_s"])
+			x, end := published.Number(t, r["x_m"]), published.Number(t, r["time_s"])
 			half := math.Max(9.5*math.Sqrt(alpha*end), x)
 			p := Problem{"x " + r["x_m"] + " t " + r["time_s"] + " " + col, body(model.Slab, half, chillFromC), []model.Step{step("chill", end, exposure(h, chillToC))}}
-			w.hold(t, p.Name, solve(t, p).At(model.Place{UpM: half - x}, end), chillFromC-(chillFromC-chillToC)*number(t, r[col]), oneAxisK)
+			w.hold(t, p.Name, solve(t, p).At(model.Place{UpM: half - x}, end), chillFromC-(chillFromC-chillToC)*published.Number(t, r[col]), oneAxisK)
 		}
 	}
 	w.log(t)
@@ -203,47 +169,47 @@ func TestHalfSpace(t *testing.T) {
 
 func TestRamp(t *testing.T) {
 	var w worst
-	for _, r := range published(t, "ramp.csv") {
-		end := number(t, r["time_s"])
-		p := Problem{r["geometry"] + " after " + r["time_s"], body(shapeOf[r["geometry"]], number(t, r["radius_m"]), 5), []model.Step{rising(end)}}
-		w.hold(t, p.Name, solve(t, p).At(model.Place{}, end)-5, number(t, r["rise_K"]), oneAxisK)
+	for _, r := range published.Rows(t, "ramp.csv") {
+		end := published.Number(t, r["time_s"])
+		p := Problem{r["geometry"] + " after " + r["time_s"], body(shapeOf[r["geometry"]], published.Number(t, r["radius_m"]), 5), []model.Step{rising(end)}}
+		w.hold(t, p.Name, solve(t, p).At(model.Place{}, end)-5, published.Number(t, r["rise_K"]), oneAxisK)
 	}
 	w.log(t)
 }
 
 func TestChains(t *testing.T) {
 	var w worst
-	for _, r := range published(t, "chain.csv") {
-		radius := number(t, r["radius_m"])
+	for _, r := range published.Rows(t, "chain.csv") {
+		radius := published.Number(t, r["radius_m"])
 		p := Problem{Name: r["chain"] + " " + r["geometry"] + " " + r["steps"], Product: body(shapeOf[r["geometry"]], radius, 5)}
 		for _, s := range strings.Split(r["steps"], ";") {
 			f := strings.Fields(s)
-			p.Steps = append(p.Steps, step("step", number(t, f[2]), exposure(number(t, f[0]), number(t, f[1]))))
+			p.Steps = append(p.Steps, step("step", published.Number(t, f[2]), exposure(published.Number(t, f[0]), published.Number(t, f[1]))))
 		}
 		h := solve(t, p)
 		s, i := last(h)
-		w.hold(t, p.Name+": centre", h.At(model.Place{}, h.EndS()), number(t, r["centre_C"]), oneAxisK)
-		w.hold(t, p.Name+": surface", h.At(model.Place{UpM: radius}, h.EndS()), number(t, r["surface_C"]), oneAxisK)
-		w.hold(t, p.Name+": mean", s.Mean[i], number(t, r["mean_C"]), oneAxisK)
+		w.hold(t, p.Name+": centre", h.At(model.Place{}, h.EndS()), published.Number(t, r["centre_C"]), oneAxisK)
+		w.hold(t, p.Name+": surface", h.At(model.Place{UpM: radius}, h.EndS()), published.Number(t, r["surface_C"]), oneAxisK)
+		w.hold(t, p.Name+": mean", s.Mean[i], published.Number(t, r["mean_C"]), oneAxisK)
 	}
 	w.log(t)
 }
 
 func TestCarryOver(t *testing.T) {
 	var w worst
-	for _, r := range published(t, "carry_over.csv") {
-		p := Problem{r["geometry"], body(shapeOf[r["geometry"]], number(t, r["radius_m"]), 5),
+	for _, r := range published.Rows(t, "carry_over.csv") {
+		p := Problem{r["geometry"], body(shapeOf[r["geometry"]], published.Number(t, r["radius_m"]), 5),
 			[]model.Step{step("oven", 2400, exposure(40, 160)), step("rest", 3600, exposure(8, 22))}}
 		h := solve(t, p)
-		w.hold(t, p.Name+": at removal", h.At(model.Place{}, 2400), number(t, r["removal_C"]), oneAxisK)
+		w.hold(t, p.Name+": at removal", h.At(model.Place{}, 2400), published.Number(t, r["removal_C"]), oneAxisK)
 		peak, when := math.Inf(-1), 0.0
 		for after := 0.0; after <= 3600; after++ {
 			if c := h.At(model.Place{}, 2400+after); c > peak {
 				peak, when = c, after
 			}
 		}
-		w.hold(t, p.Name+": peak", peak, number(t, r["peak_C"]), oneAxisK)
-		if want := number(t, r["peak_after_s"]); math.Abs(when-want) > 5 {
+		w.hold(t, p.Name+": peak", peak, published.Number(t, r["peak_C"]), oneAxisK)
+		if want := published.Number(t, r["peak_after_s"]); math.Abs(when-want) > 5 {
 			t.Errorf("%s: peak %g s after removal, want %g ± 5", p.Name, when, want)
 		}
 	}
@@ -274,7 +240,7 @@ func TestPenetrationRule(t *testing.T) {
 
 // The long-time value holds from Fo 0.1 on the full thickness or diameter on, and not at 0.02.
 func TestOnsetOfTheLongTime(t *testing.T) {
-	for _, r := range published(t, "nusselt.csv") {
+	for _, r := range published.Rows(t, "nusselt.csv") {
 		shape, e := shapeOf[r["geometry"]], map[string]float64{"plate": 1, "cylinder": 2, "sphere": 3}[r["geometry"]]
 		const radius = 0.1 // large, so that Fo 0.02 comes long after the start
 		p, _ := oneStep(shape, radius, held, 4*0.2)
@@ -284,7 +250,7 @@ func TestOnsetOfTheLongTime(t *testing.T) {
 			s := h.Sample(every)
 			return math.Log((s.Mean[49]-chillToC)/(s.Mean[51]-chillToC)) / (s.TimesS[51] - s.TimesS[49]) * radius * radius / alpha * 2 / e
 		}
-		want := number(t, r["Nu"])
+		want := published.Number(t, r["Nu"])
 		for _, fo := range []float64{0.1, 0.15, 0.19} {
 			if got := nu(fo); math.Abs(got/want-1) > 1e-3 {
 				t.Errorf("%s: Nusselt %.5f at Fo %g, want %.5f within 0.1 %%", shape.Name, got, fo, want)
