@@ -1,40 +1,14 @@
 package rules
 
 import (
-	"encoding/csv"
 	"fmt"
 	"math"
-	"os"
 	"strings"
 	"testing"
 
 	"slowpoint/model"
+	"slowpoint/testdata/published"
 )
-
-// published reads a table of testdata/published: rows by column name.
-func published(t testing.TB, name string) []map[string]string {
-	t.Helper()
-	file, err := os.Open("../testdata/published/" + name)
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer file.Close()
-	r := csv.NewReader(file)
-	r.Comment = '#'
-	all, err := r.ReadAll()
-	if err != nil {
-		t.Fatal(err)
-	}
-	var rows []map[string]string
-	for _, line := range all[1:] {
-		row := map[string]string{}
-		for i, name := range all[0] {
-			row[name] = line[i]
-		}
-		rows = append(rows, row)
-	}
-	return rows
-}
 
 // lethal judges the lethality of a cook at the centre and returns its value.
 func lethal(t testing.TB, l Limit, course string) float64 {
@@ -208,7 +182,7 @@ func TestPublishedLethality(t *testing.T) {
 			cases[s.id+"_"+name] = wrong(s.e, name, s.every)
 		}
 	}
-	for _, row := range published(t, "lethality.csv") {
+	for _, row := range published.Rows(t, "lethality.csv") {
 		t.Run(row["id"], func(t *testing.T) {
 			f := cases[row["id"]]
 			if f == nil {
@@ -250,7 +224,7 @@ func celsius(t testing.TB, typed string) float64 {
 func holdTable(t testing.TB, name string) *Table {
 	t.Helper()
 	table := &Table{Name: name}
-	for _, row := range published(t, "hold_tables.csv") {
+	for _, row := range published.Rows(t, "hold_tables.csv") {
 		if row["table"] == name {
 			table.Rows = append(table.Rows, Row{C: celsius(t, row["temperature"]), S: seconds(t, row["time"]), Typed: row["temperature"] + ", " + row["time"]})
 		}
