@@ -461,7 +461,7 @@ func (cs *chainStep) group(m Course, durS float64) int {
 }
 
 // thinK is how far a course may be moved by leaving points out, K. No place in the food can move further.
-const thinK = 2e-4
+const thinK = 1e-3
 
 // thinned leaves out points of a course that lie within thinK of a straight line between those that stay, and what comes after
 // durS. Logged courses hold thousands of points on nearly straight lines, and each costs as much as a step.
