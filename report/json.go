@@ -299,6 +299,15 @@ func appendNumber(b []byte, x float64, decimals int) []byte {
 	if math.IsNaN(x) || math.IsInf(x, 0) {
 		return append(b, "null"...)
 	}
+	if decimals > 0 && decimals < len(tens) {
+		scaled := math.Abs(x) * tens[decimals]
+		n := math.Floor(scaled)
+		rest := scaled - n
+		// Unless it is near a half, the product is rounded as the exact number would be: below 1e10 it is wrong by less than 1e-6.
+		if scaled < 1e10 && math.Abs(rest-0.5) > 1e-5 {
+			return appendDecimal(b, int64(n)+int64(btoi(rest > 0.5)), decimals, x < 0)
+		}
+	}
 	start := len(b)
 	b = strconv.AppendFloat(b, x, 'f', decimals, 64)
 	if decimals > 0 {
@@ -313,6 +322,31 @@ func appendNumber(b []byte, x float64, decimals int) []byte {
 		return append(b[:start], '0')
 	}
 	return b
+}
+
+// tens are the powers of ten.
+var tens = [...]float64{1, 10, 100, 1e3, 1e4, 1e5, 1e6}
+
+// appendDecimal writes n with its last digits behind the point, no trailing noughts and no −0.
+func appendDecimal(b []byte, n int64, decimals int, negative bool) []byte {
+	if negative && n > 0 {
+		b = append(b, '-')
+	}
+	for ; decimals > 0 && n%10 == 0; decimals-- {
+		n /= 10
+	}
+	var room [24]byte
+	i := len(room)
+	for k := 0; n > 0 || k <= decimals; k++ {
+		if k == decimals && k > 0 {
+			i--
+			room[i] = '.'
+		}
+		i--
+		room[i] = byte('0' + n%10)
+		n /= 10
+	}
+	return append(b, room[i:]...)
 }
 
 // appendPlace writes a place as [up, across, along] in mm.

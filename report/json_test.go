@@ -6,12 +6,15 @@ import (
 	"flag"
 	"fmt"
 	"io"
+	"math"
+	"math/rand"
 	"os"
 	"path/filepath"
 	"reflect"
 	"runtime"
 	"slices"
 	"sort"
+	"strconv"
 	"strings"
 	"testing"
 
@@ -339,5 +342,36 @@ func TestJSONFault(t *testing.T) {
 	j.value("x", json.RawMessage("NaN"))
 	if err := j.Close(); err == nil {
 		t.Error("a value that is no JSON went unseen")
+	}
+}
+
+// A number is written as the standard library rounds it, without trailing noughts: also at a half, where a product of floats
+// would round the other way, beyond the whole digits of a float, and below the last decimal.
+func TestAppendNumber(t *testing.T) {
+	for _, c := range []struct {
+		x        float64
+		decimals int
+		want     string
+	}{
+		{0, 5, "0"}, {math.Copysign(0, -1), 5, "0"}, {-0.000004, 5, "0"}, {0.000006, 5, "0.00001"}, {-12.5, 5, "-12.5"}, {100, 4, "100"}, {9.99999999, 5, "10"},
+		{1.005, 2, "1"}, {0.125, 2, "0.12"}, {0.375, 2, "0.38"}, {2.5, 0, "2"}, {1234567890123.25, 1, "1234567890123.2"}, {0.1, -1, "0.1"}, {1e-7, -1, "0.0000001"},
+	} {
+		if got := string(appendNumber(nil, c.x, c.decimals)); got != c.want {
+			t.Errorf("%v with %d decimals: %s, want %s", c.x, c.decimals, got, c.want)
+		}
+	}
+	draw := rand.New(rand.NewSource(20260131))
+	for range 200_000 {
+		x, decimals := (draw.Float64()-0.5)*math.Pow10(draw.Intn(14)-4), 1+draw.Intn(6)
+		if draw.Intn(3) == 0 { // a half of the last decimal, as exactly as a float holds it
+			x = (math.Round(x) + 0.5) / math.Pow10(decimals)
+		}
+		want := strings.TrimRight(strings.TrimRight(strconv.FormatFloat(x, 'f', decimals, 64), "0"), ".")
+		if want == "-0" {
+			want = "0"
+		}
+		if got := string(appendNumber(nil, x, decimals)); got != want {
+			t.Fatalf("%v with %d decimals: %s, want %s", x, decimals, got, want)
+		}
 	}
 }

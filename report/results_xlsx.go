@@ -34,19 +34,52 @@ type grid struct {
 	name    string
 	columns []gridColumn
 	letters []string
+	names   *names
 	most    int // rows a page, the heading included
 	paper   string
 	pages   []*part
 	filters []string // of each finished page: the range with the filter buttons
 	row     int      // last row written on the current page
-	col     int      // last column written in it
+	col     int      // last column written or left blank in it
+	wrote   int      // last column written in it
 	b       []byte
 	n       []byte // the row's number
 	err     error
 }
 
-func newGrid(name string, columns []gridColumn, paper string) *grid {
-	return &grid{name: name, columns: columns, paper: paper, most: mostRows}
+func newGrid(name string, columns []gridColumn, paper string, names *names) *grid {
+	return &grid{name: name, columns: columns, paper: paper, names: names, most: mostRows}
+}
+
+// names are the texts that stand in many cells: each is kept once, and the cells have its number.
+type names struct {
+	number map[string]int
+	part   *part
+	b      []byte // scratch
+	err    error
+}
+
+func newNames() *names {
+	n := &names{number: map[string]int{}, part: newPart()}
+	n.write(`<?xml version="1.0" encoding="UTF-8" standalone="yes"?>` + "\n" + `<sst xmlns="http://schemas.openxmlformats.org/spreadsheetml/2006/main">`)
+	return n
+}
+
+func (n *names) write(s string) {
+	if _, err := n.part.Write(append(n.b[:0], s...)); n.err == nil {
+		n.err = err
+	}
+}
+
+// of gives the number of a text, from 0.
+func (n *names) of(s string) int {
+	i, known := n.number[s]
+	if !known {
+		i = len(n.number)
+		n.number[s] = i
+		n.write(`<si><t xml:space="preserve">` + string(xmlText(nil, s)) + `</t></si>`)
+	}
+	return i
 }
 
 // room makes sure that n rows stand together if a page can hold them.
@@ -109,7 +142,7 @@ func (g *grid) fail(err error) {
 
 func (g *grid) begin() {
 	g.row++
-	g.col = 0
+	g.col, g.wrote = 0, 0
 	g.n = strconv.AppendInt(g.n[:0], int64(g.row), 10)
 	g.b = append(append(append(g.b, `<row r="`...), g.n...), `">`...)
 }
@@ -121,17 +154,20 @@ func (g *grid) end() {
 	g.b = g.b[:0]
 }
 
-// cell opens the next cell up to its attributes.
+// cell opens the next cell up to its attributes. Its place is written where a row begins and behind a blank; the others follow.
 func (g *grid) cell(style int) {
 	g.col++
 	for len(g.letters) < g.col {
 		g.letters = append(g.letters, cell.ColumnName(len(g.letters)+1))
 	}
-	g.b = append(append(append(g.b, `<c r="`...), g.letters[g.col-1]...), g.n...)
-	g.b = append(g.b, '"')
-	if style > 0 {
-		g.b = append(append(g.b, ` s="`...), strconv.Itoa(style)...)
+	g.b = append(g.b, `<c`...)
+	if g.col == 1 || g.col != g.wrote+1 {
+		g.b = append(append(append(g.b, ` r="`...), g.letters[g.col-1]...), g.n...)
 		g.b = append(g.b, '"')
+	}
+	g.wrote = g.col
+	if style > 0 {
+		g.b = append(append(g.b, ` s="`...), byte('0'+style), '"')
 	}
 }
 
@@ -148,6 +184,17 @@ func (g *grid) styled(s string, style int) {
 	g.cell(style)
 	g.b = append(g.b, ` t="inlineStr"><is><t xml:space="preserve">`...)
 	g.b = append(xmlText(g.b, s), `</t></is></c>`...)
+}
+
+// called writes a text that stands in many cells.
+func (g *grid) called(s string) {
+	if s == "" {
+		g.skip()
+		return
+	}
+	g.cell(plainStyle)
+	g.b = strconv.AppendInt(append(g.b, ` t="s"><v>`...), int64(g.names.of(s)), 10)
+	g.b = append(g.b, `</v></c>`...)
 }
 
 // number writes a number; one that does not exist leaves the cell blank.
@@ -185,7 +232,7 @@ func (g *grid) words(texts ...string) {
 	g.end()
 }
 
-// The styles, in the order in which they are made.
+// The styles, in the order in which they are made; fewer than ten.
 const (
 	plainStyle   = iota + 1 // text: a formula typed by the user stays one even when the cell is edited
 	headingStyle            // bold, wrapped, on grey
@@ -217,15 +264,17 @@ type Workbook struct {
 	w                        io.Writer
 	h                        *Head
 	rows                     []slim
+	names                    *names
 	findings, courses, input *grid
 }
 
 // NewWorkbook makes a writer of results.xlsx; nothing reaches w before Close.
 func NewWorkbook(w io.Writer, h *Head) *Workbook {
-	return &Workbook{w: w, h: h,
-		findings: newGrid("Findings", findingColumns(h), h.Paper),
-		courses:  newGrid("Courses", courseColumns(h), h.Paper),
-		input:    newGrid("Input", inputColumns, h.Paper)}
+	n := newNames()
+	return &Workbook{w: w, h: h, names: n,
+		findings: newGrid("Findings", findingColumns(h), h.Paper, n),
+		courses:  newGrid("Courses", courseColumns(h), h.Paper, n),
+		input:    newGrid("Input", inputColumns, h.Paper, n)}
 }
 
 // unit is the user's unit of temperature.
@@ -292,9 +341,23 @@ func (b *Workbook) Add(p *Product) error {
 	b.addCourse(p)
 	b.input.room(len(p.Readings))
 	for _, r := range p.Readings {
-		b.input.words(p.Product.Name, r.At.String(), r.Column, r.Typed, r.Used, r.Why)
+		b.reading(p.Product.Name, &r)
 	}
-	return errors.Join(b.findings.err, b.courses.err, b.input.err)
+	return errors.Join(b.findings.err, b.courses.err, b.input.err, b.names.err)
+}
+
+// reading writes a row of the input.
+func (b *Workbook) reading(product string, r *cell.Reading) {
+	g := b.input
+	g.room(1)
+	g.begin()
+	g.called(product)
+	g.text(r.At.String())
+	g.called(r.Column)
+	g.text(r.Typed)
+	g.text(r.Used)
+	g.text(r.Why)
+	g.end()
 }
 
 func (b *Workbook) addFindings(p *Product) {
@@ -408,9 +471,9 @@ func (b *Workbook) addCourse(p *Product) {
 		step, stage := stepWords(w.Spans, k)
 		g.room(1)
 		g.begin()
-		g.text(p.Product.Name)
-		g.text(step)
-		g.text(stage)
+		g.called(p.Product.Name)
+		g.called(step)
+		g.called(stage)
 		g.number(t / 60)
 		if w.MediumC != nil {
 			g.number(b.h.inUnit(w.MediumC(t)))
@@ -423,7 +486,7 @@ func (b *Workbook) addCourse(p *Product) {
 		place(s.ColdestAt, i)
 		place(s.HottestAt, i)
 		for n, pt := range w.Points {
-			g.text(pt.Name)
+			g.called(pt.Name)
 			if n < len(s.Points) {
 				temperature(s.Points[n], i)
 			} else {
@@ -448,7 +511,7 @@ func stepWords(spans []model.Span, k int) (step, stage string) {
 
 // overview makes the first sheet: the products, the worst first; below them the problems and what the run was.
 func (b *Workbook) overview() *grid {
-	g := newGrid(overviewName, overviewColumns(b.h), b.h.Paper)
+	g := newGrid(overviewName, overviewColumns(b.h), b.h.Paper, b.names)
 	rows := listed(b.h.NotCalculated, b.rows)
 	g.room(len(rows))
 	for i := range rows {
@@ -533,13 +596,20 @@ func (b *Workbook) Close() (err error) {
 				p.packed.Close()
 			}
 		}
+		b.names.part.packed.Close()
 	}()
 	f := excelize.NewFile()
 	defer func() { err = errors.Join(err, f.Close()) }()
 	if err := makeStyles(f); err != nil {
 		return err
 	}
-	pages := map[string]*part{}
+	if err := f.SetCellStr("Sheet1", "A1", overviewName); err != nil { // for the part of the names, which ours replaces
+		return err
+	}
+	if b.names.write(`</sst>`); b.names.err != nil {
+		return b.names.err
+	}
+	parts := map[string]*part{"xl/sharedStrings.xml": b.names.part}
 	for i, g := range grids {
 		if len(g.pages) == 0 {
 			g.turn()
@@ -550,24 +620,24 @@ func (b *Workbook) Close() (err error) {
 		if g.err != nil {
 			return g.err
 		}
-		if err := g.bind(f, pages); err != nil {
+		if err := g.bind(f, parts); err != nil {
 			return err
 		}
 	}
 	if err := b.properties(f); err != nil {
 		return err
 	}
-	return writeParts(f, b.w, pages)
+	return writeParts(f, b.w, parts)
 }
 
 // bind makes the sheets in the file that the pages stand for.
-func (g *grid) bind(f *excelize.File, pages map[string]*part) error {
+func (g *grid) bind(f *excelize.File, parts map[string]*part) error {
 	for i, p := range g.pages {
 		name := g.name
 		if i > 0 {
 			name = fmt.Sprintf("%s %d", g.name, i+1)
 		}
-		n := len(pages) + 1
+		n := len(parts) // the sheets so far, and the names
 		if n == 1 {
 			if err := f.SetSheetName("Sheet1", name); err != nil {
 				return err
@@ -575,7 +645,7 @@ func (g *grid) bind(f *excelize.File, pages map[string]*part) error {
 		} else if _, err := f.NewSheet(name); err != nil {
 			return err
 		}
-		pages[fmt.Sprintf("xl/worksheets/sheet%d.xml", n)] = p
+		parts[fmt.Sprintf("xl/worksheets/sheet%d.xml", n)] = p
 		if err := f.AutoFilter(name, g.filters[i], nil); err != nil { // for the hidden name that goes with the filter
 			return err
 		}

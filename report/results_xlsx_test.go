@@ -246,3 +246,24 @@ func TestListedWorstFirst(t *testing.T) {
 		t.Error(d)
 	}
 }
+
+// A name that stands in every row of a course is kept once, and a cell behind a blank says where it stands.
+func TestNamesAreKeptOnce(t *testing.T) {
+	p := trayProduct(t, "Stew & rice")
+	p.Samples.Mean[1] = math.NaN() // leaves a blank in column H
+	f := opened(t, write(t, NewWorkbook, trayHead(), p))
+	texts := map[string]string{}
+	for _, name := range []string{"xl/sharedStrings.xml", "xl/worksheets/sheet3.xml"} {
+		b, ok := f.Pkg.Load(name)
+		if !ok {
+			t.Fatalf("%s is missing", name)
+		}
+		texts[name] = string(b.([]byte))
+	}
+	if n := strings.Count(texts["xl/sharedStrings.xml"], "Stew &amp; rice"); n != 1 {
+		t.Errorf("the product is kept %d times", n)
+	}
+	if sheet := texts["xl/worksheets/sheet3.xml"]; strings.Contains(sheet, "Stew") || !strings.Contains(sheet, `<c r="I3"`) || strings.Contains(sheet, `r="I2"`) {
+		t.Errorf("the courses: %.2000s", sheet)
+	}
+}

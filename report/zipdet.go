@@ -127,10 +127,10 @@ func sortTypes(b []byte) []byte {
 	return defaultType.ReplaceAllFunc(b, func([]byte) []byte { i++; return sorted[i] })
 }
 
-// writeParts writes f to w; pages are the sheets that take the place of the empty ones of f, by name of the part.
-func writeParts(f *excelize.File, w io.Writer, pages map[string]*part) error {
+// writeParts writes f to w; ours are the parts that take the place of those of f, by name.
+func writeParts(f *excelize.File, w io.Writer, ours map[string]*part) error {
 	f.SetZipWriter(func(io.Writer) excelize.ZipWriter {
-		return &zipParts{out: w, ours: pages, plain: map[string]*bytes.Buffer{}}
+		return &zipParts{out: w, ours: ours, plain: map[string]*bytes.Buffer{}}
 	})
 	return f.Write(io.Discard)
 }
