@@ -3,6 +3,7 @@ package report
 import (
 	"image/color"
 	"math"
+	"slices"
 	"sort"
 	"strings"
 
@@ -99,14 +100,33 @@ func (f *chart) draw(c *canvas) {
 	p.Title.TextStyle.Font, p.Title.TextStyle.Handler = p.X.Label.TextStyle.Font, faces().measure
 	p.Legend.TextStyle.Font, p.Legend.TextStyle.Handler = p.X.Label.TextStyle.Font, faces().measure
 	p.X.Label.Text, p.Y.Label.Text = f.xName, f.yName
-	p.X.Tick.Marker, p.Y.Tick.Marker = plot.ConstantTicks(f.xTicks), marks(f.yTicks)
+	p.Y.Tick.Marker = marks(f.yTicks)
 	p.Add(f)
 	widest := 0.0
 	for _, l := range f.lines {
 		widest = max(widest, widthMM(unseen{}.clean(l.name), f.size, false)/mmPerPt+17)
 	}
 	f.ends = min(f.ends, widest)
+	wide, _ := c.Size()
+	const beside = 40 // pt for the axis of temperatures, about
+	p.X.Tick.Marker = f.apart(float64(wide) - f.ends - beside)
 	p.Draw(draw.Crop(draw.New(c), 0, -vg.Length(f.ends), 0, 0))
+}
+
+// apart gives the marks of the lower axis, wide pt long, without the numbers that would touch the one before.
+func (f *chart) apart(wide float64) plot.ConstantTicks {
+	const gap = 4 // pt
+	t := append(plot.ConstantTicks(nil), f.xTicks...)
+	end := math.Inf(-1)
+	for i := range t {
+		at, half := (t[i].Value-f.x0)/(f.x1-f.x0)*wide, widthMM(t[i].Label, f.size, false)/mmPerPt/2
+		if at-half < end+gap {
+			t[i].Label = ""
+			continue
+		}
+		end = at + half
+	}
+	return t
 }
 
 func marks(at []float64) plot.ConstantTicks {
@@ -138,13 +158,7 @@ func (f *chart) Plot(c draw.Canvas, p *plot.Plot) {
 	for _, l := range f.levels { // no words on any limit's line, their own among them
 		taken.add(vg.Rectangle{Min: vg.Point{X: x(l.from), Y: y(l.y) - 0.7}, Max: vg.Point{X: x(l.to), Y: y(l.y) + 0.7}})
 	}
-	var notes []note
-	for i := range f.levels {
-		notes = append(notes, f.placeLevel(c, x, y, &f.levels[i], taken))
-	}
-	for _, s := range f.spots {
-		notes = append(notes, f.placeSpot(c, s.words, vg.Point{X: x(s.x), Y: y(s.y)}, taken))
-	}
+	notes := f.notes(c, x, y, taken)
 	for _, n := range notes {
 		b := n.box
 		c.FillPolygon(color.White, []vg.Point{b.Min, {X: b.Max.X, Y: b.Min.Y}, b.Max, {X: b.Min.X, Y: b.Max.Y}})
@@ -231,13 +245,7 @@ func (f *chart) runs(x, y func(float64) vg.Length, i int, taken *labels) [][]vg.
 		}
 		pt := vg.Point{X: x(l.x[k]), Y: y(l.y[k])}
 		if n := len(run); n > 0 {
-			last := run[n-1]
-			parts := max(1, int(math.Hypot(float64(pt.X-last.X), float64(pt.Y-last.Y))/4))
-			for q := 1; q <= parts; q++ {
-				s := vg.Length(q) / vg.Length(parts)
-				m := vg.Point{X: last.X + s*(pt.X-last.X), Y: last.Y + s*(pt.Y-last.Y)}
-				taken.add(vg.Rectangle{Min: vg.Point{X: m.X - 1, Y: m.Y - 1}, Max: vg.Point{X: m.X + 1, Y: m.Y + 1}})
-			}
+			taken.line(run[n-1], pt)
 		}
 		run = append(run, pt)
 	}
@@ -262,12 +270,39 @@ func (f *chart) plotLine(c draw.Canvas, x, y func(float64) vg.Length, i int, run
 	}
 }
 
+// notes places every label where it covers least. Limits without their names leave more room; the sentence below names them.
+func (f *chart) notes(c draw.Canvas, x, y func(float64) vg.Length, taken *labels) []note {
+	notes, covers := f.placeNotes(c, x, y, *taken, false)
+	if covers > 0 {
+		if brief, less := f.placeNotes(c, x, y, *taken, true); less < covers {
+			return brief
+		}
+	}
+	return notes
+}
+
+// placeNotes finds room for every label, brief without the names of limits, and tells how much the marked instants' labels cover.
+func (f *chart) placeNotes(c draw.Canvas, x, y func(float64) vg.Length, taken labels, brief bool) (notes []note, covers float64) {
+	taken.boxes = slices.Clip(taken.boxes) // each try adds its own
+	for i := range f.levels {
+		notes = append(notes, f.placeLevel(c, x, y, &f.levels[i], &taken, brief))
+	}
+	for _, s := range f.spots {
+		n, cost := f.placeSpot(c, s.words, vg.Point{X: x(s.x), Y: y(s.y)}, &taken)
+		notes, covers = append(notes, n), covers+cost
+	}
+	return notes, covers
+}
+
 // placeLevel finds room for the words of a limit at its line, in one line, in several, or without its name.
-func (f *chart) placeLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level, taken *labels) note {
+func (f *chart) placeLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level, taken *labels, brief bool) note {
 	var found note
 	least := math.Inf(1)
 	narrow := append([]string{l.words[0]}, wrap(unseen{}.clean(l.words[1]), 36*f.size/small, f.size, false)...)
 	for k, lines := range [][]string{{strings.Join(l.words, " – ")}, l.words, narrow, l.words[:1]} {
+		if brief && k < 3 {
+			continue
+		}
 		w := vg.Length(0)
 		for _, s := range lines {
 			w = max(w, f.style(false).Width(s)+3)
@@ -275,8 +310,8 @@ func (f *chart) placeLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level
 		h := vg.Length(f.size * 1.2 * float64(len(lines)))
 		left, right := x(l.from)+2, max(x(l.to)-w-2, x(l.from)+2)
 		var at []vg.Point
-		for k := 0; k <= 12; k++ { // along the line, above first
-			px := min(max(left+(right-left)*vg.Length(k)/12, c.Min.X+2), c.Max.X-w)
+		for k := 0; k <= 30; k++ { // along the line, above first
+			px := min(max(left+(right-left)*vg.Length(k)/30, c.Min.X+2), c.Max.X-w)
 			at = append(at, vg.Point{X: px, Y: y(l.y) + 1}, vg.Point{X: px, Y: y(l.y) - h - 1})
 		}
 		if end := x(l.to) + 3; end+w < c.Max.X { // or behind its end
@@ -284,7 +319,7 @@ func (f *chart) placeLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level
 		}
 		box, cost := taken.best(at, w, h, c.Rectangle)
 		if k == 3 { // the temperature alone rather than its name across a curve; the sentence below names it
-			cost += 12
+			cost += 6
 		}
 		if len(lines) < 5 && cost < least {
 			found, least = note{words: lines, box: box}, cost
@@ -294,8 +329,8 @@ func (f *chart) placeLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level
 	return found
 }
 
-// placeSpot finds room for a label near a point; farther off it gets a line.
-func (f *chart) placeSpot(c draw.Canvas, s string, p vg.Point, taken *labels) note {
+// placeSpot finds room for a label near a point, or else anywhere on the chart; farther off it gets a line.
+func (f *chart) placeSpot(c draw.Canvas, s string, p vg.Point, taken *labels) (note, float64) {
 	w, h := f.style(false).Width(s)+3, vg.Length(f.size*1.2)
 	var at []vg.Point
 	for _, far := range []vg.Length{6, 12, 20, 30, 42, 56, 75} {
@@ -305,21 +340,58 @@ func (f *chart) placeSpot(c draw.Canvas, s string, p vg.Point, taken *labels) no
 				vg.Point{X: p.X + side + 3*dx, Y: p.Y + far/3}, vg.Point{X: p.X + side + 3*dx, Y: p.Y - far/3 - h})
 		}
 	}
-	b, _ := taken.best(at, w, h, c.Rectangle)
+	b, covers := taken.best(at, w, h, c.Rectangle)
+	covers += taken.crossed(leader(p, b))
+	if cost := covers; cost > 0 { // nowhere near: the place anywhere that covers least, the nearest of several
+		for y := c.Min.Y + 1; y+h < c.Max.Y; y += 4 {
+			for x := c.Min.X + 1; x+w < c.Max.X; x += 8 {
+				r := vg.Rectangle{Min: vg.Point{X: x, Y: y}, Max: vg.Point{X: x + w, Y: y + h}}
+				from, to := leader(p, r)
+				most := cost - 0.02*math.Hypot(float64(to.X-from.X), float64(to.Y-from.Y))
+				if most <= 0 {
+					continue
+				}
+				if here := taken.cover(r, most); here < most {
+					if here += taken.crossed(from, to); here < most {
+						b, covers, cost = r, here, here+cost-most
+					}
+				}
+			}
+		}
+	}
 	taken.label(b)
 	n := note{words: []string{s}, box: b}
-	to := vg.Point{X: min(max(p.X, b.Min.X), b.Max.X), Y: min(max(p.Y, b.Min.Y), b.Max.Y)}
-	if d := vg.Length(math.Hypot(float64(to.X-p.X), float64(to.Y-p.Y))); d > 10 {
-		from := vg.Point{X: p.X + (to.X-p.X)*4/d, Y: p.Y + (to.Y-p.Y)*4/d}
+	if from, to := leader(p, b); math.Hypot(float64(to.X-p.X), float64(to.Y-p.Y)) > 10 {
 		n.from, n.to = &from, &to
+		taken.line(from, to)
 	}
-	return n
+	return n, covers
 }
 
-// labels remembers what is taken on a chart.
-type labels struct{ boxes []vg.Rectangle }
+// leader is the line from the ring around a point to the nearest edge of a label.
+func leader(p vg.Point, b vg.Rectangle) (from, to vg.Point) {
+	to = vg.Point{X: min(max(p.X, b.Min.X), b.Max.X), Y: min(max(p.Y, b.Min.Y), b.Max.Y)}
+	d := vg.Length(math.Hypot(float64(to.X-p.X), float64(to.Y-p.Y)))
+	if d <= 4 {
+		return to, to
+	}
+	return vg.Point{X: p.X + (to.X-p.X)*4/d, Y: p.Y + (to.Y-p.Y)*4/d}, to
+}
+
+// labels remembers what is taken on a chart: everything, and the labels by themselves, which no line may cross.
+type labels struct{ boxes, words []vg.Rectangle }
 
 func (t *labels) add(r vg.Rectangle) { t.boxes = append(t.boxes, r) }
+
+// line takes the room of a line.
+func (t *labels) line(from, to vg.Point) {
+	parts := max(1, int(math.Hypot(float64(to.X-from.X), float64(to.Y-from.Y))/4))
+	for q := 1; q <= parts; q++ {
+		s := vg.Length(q) / vg.Length(parts)
+		m := vg.Point{X: from.X + s*(to.X-from.X), Y: from.Y + s*(to.Y-from.Y)}
+		t.add(vg.Rectangle{Min: vg.Point{X: m.X - 1, Y: m.Y - 1}, Max: vg.Point{X: m.X + 1, Y: m.Y + 1}})
+	}
+}
 
 // best takes the first of the places that covers nothing, or the one that covers least, within bounds.
 func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) (vg.Rectangle, float64) {
@@ -330,13 +402,7 @@ func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) (vg.Rectan
 		if r.Min.X < in.Min.X || r.Max.X > in.Max.X+1 || r.Min.Y < in.Min.Y || r.Max.Y > in.Max.Y {
 			cost += 1000
 		}
-		for _, b := range t.boxes {
-			dx, dy := min(r.Max.X, b.Max.X)-max(r.Min.X, b.Min.X), min(r.Max.Y, b.Max.Y)-max(r.Min.Y, b.Min.Y)
-			if dx > 0 && dy > 0 {
-				cost += 1 + float64(dx*dy)
-			}
-		}
-		if cost < least {
+		if cost += t.cover(r, least-cost); cost < least {
 			least, found = cost, p
 		}
 		if cost == 0 {
@@ -346,8 +412,39 @@ func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) (vg.Rectan
 	return vg.Rectangle{Min: found, Max: vg.Point{X: found.X + w, Y: found.Y + h}}, least
 }
 
+// cover is how much of what is taken a rectangle covers; it stops counting where most is reached.
+func (t *labels) cover(r vg.Rectangle, most float64) float64 {
+	cost := 0.0
+	for _, b := range t.boxes {
+		dx, dy := min(r.Max.X, b.Max.X)-max(r.Min.X, b.Min.X), min(r.Max.Y, b.Max.Y)-max(r.Min.Y, b.Min.Y)
+		if dx > 0 && dy > 0 {
+			if cost += 1 + float64(dx*dy); cost >= most {
+				break
+			}
+		}
+	}
+	return cost
+}
+
+// crossed is how much of labels a line crosses.
+func (t *labels) crossed(from, to vg.Point) float64 {
+	cost := 0.0
+	parts := max(1, int(math.Hypot(float64(to.X-from.X), float64(to.Y-from.Y))/3))
+	for q := 0; q <= parts; q++ {
+		s := vg.Length(q) / vg.Length(parts)
+		x, y := from.X+s*(to.X-from.X), from.Y+s*(to.Y-from.Y)
+		for _, b := range t.words {
+			if x > b.Min.X && x < b.Max.X && y > b.Min.Y && y < b.Max.Y {
+				cost += 5
+			}
+		}
+	}
+	return cost
+}
+
 // label takes the room of words: words upon words are worse than words upon a line.
 func (t *labels) label(r vg.Rectangle) {
+	t.words = append(t.words, r)
 	for range 3 {
 		t.add(r)
 	}
