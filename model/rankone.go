@@ -89,19 +89,20 @@ func secularRoot(d, v []float64, rho, sum float64, j int) (from int, delta float
 		x = width * 0.999999
 	}
 	for it := 0; it < 80; it++ {
-		s, left, right := 1/rho, 0.0, 0.0
-		size := 1 / rho
-		for k := range d {
+		below, above, left, right := 0.0, 0.0, 0.0, 0.0 // poles up to j give negative terms, the others positive ones
+		for k, z := range v[:j+1] {
+			r := 1 / ((d[k] - d[from]) - x)
+			t := z * z * r
+			below += t
+			left += t * r
+		}
+		for k := j + 1; k < n; k++ {
 			r := 1 / ((d[k] - d[from]) - x)
 			t := v[k] * v[k] * r
-			s += t
-			size += math.Abs(t)
-			if k <= j {
-				left += t * r
-			} else {
-				right += t * r
-			}
+			above += t
+			right += t * r
 		}
+		s, size := 1/rho+below+above, 1/rho-below+above
 		if s < 0 {
 			lo = x
 		} else {
