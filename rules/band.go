@@ -15,9 +15,13 @@ func judgeBand(v *view) Finding {
 	q := question{unit: "min", need: *l.TimeS / 60}
 	q.measure = func(p path, t tilt) outcome {
 		r := between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK)
+		if t.bound {
+			p = v.cappedFrom(p, (r.lo+r.hi)/2)
+		}
 		sp := p.stay(v.stages, r)
-		o := v.exposed(sp, l.Counting, "band", t)
-		o.bad += v.depth(p, r, sp.counted(l.Counting).s, l.Counting)
+		count := v.counting(t)
+		o := v.exposed(sp, count, "band", t)
+		o.bad += v.depth(p, r, sp.counted(count).s, count)
 		return o
 	}
 	return v.judgePlaces(q)
@@ -33,13 +37,16 @@ func (v *view) exposed(sp spent, c Counting, word string, t tilt) outcome {
 		o.holes = holes{"value": lasting(was.s, 1), "count": strconv.Itoa(sp.count)}
 	}
 	o.start, o.end, o.at = when(was, sp.count)
-	switch {
-	case c == Once && sp.count > 1:
+	switch o.again = c == Once && sp.count > 1; {
+	case o.again:
 		o.word, o.bad, o.margin = map[string]string{"band": "band again"}[word], 1e5+was.s/60, math.NaN()
 		if o.word == "" {
 			o.word = "out again"
 		}
-	case l.within(was.s, *l.TimeS):
+	case !l.within(was.s, *l.TimeS):
+	case t.bound && c == Once && v.mayMultiply(was, false):
+		o.verdict = CannotTell
+	default:
 		o.verdict = Met
 	}
 	return o

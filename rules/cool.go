@@ -50,15 +50,26 @@ func (v *view) clockStart(p path, w window, t tilt) (start float64, ok, open boo
 		return 0, false, false
 	}
 	level := from + t.errK
-	if q.c[top] <= level {
-		return q.t[top], true, false
+	if start, ok = q.fallsTo(level, top); !ok {
+		return 0, false, w.last && v.endsCold(w)
 	}
-	for i := top; i+1 < len(q.c); i++ {
-		if q.c[i] > level && q.c[i+1] <= level {
-			return q.cross(i, level), true, false
+	if t.bound {
+		start = v.earliest(q, top, level, start)
+	}
+	return start, true, false
+}
+
+// fallsTo finds the first fall to a level from a knot on; that knot's instant where it is no higher.
+func (p path) fallsTo(level float64, from int) (float64, bool) {
+	if p.c[from] <= level {
+		return p.t[from], true
+	}
+	for i := from; i+1 < len(p.c); i++ {
+		if p.c[i] > level && p.c[i+1] <= level {
+			return p.cross(i, level), true
 		}
 	}
-	return 0, false, w.last && v.endsCold(w)
+	return 0, false
 }
 
 // crossedC is the temperature whose crossing starts the clock, °C.

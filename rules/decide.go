@@ -2,7 +2,6 @@ package rules
 
 import (
 	"math"
-	"sort"
 
 	"slowpoint/model"
 	"slowpoint/model/cell"
@@ -14,6 +13,9 @@ type tilt struct {
 	ownK float64 // the limit's own temperature alone moves: what the margin asks
 	rank bool    // only verdict, value and badness are wanted: no words
 	edge bool    // a place whose highest temperature is that at which the clock starts, within errK, counts: the unfavourable reading
+
+	bound bool     // of all courses at or below one that is only a bound, the least favourable reading (see bound.go)
+	count Counting // instead of the limit's own; NotCounted: its own
 }
 
 // outcome is what a limit says of one place.
@@ -29,6 +31,7 @@ type outcome struct {
 	row        *Row    // the deciding row of a table
 	notes      []string
 	cautions   []string
+	again      bool   // a second period breaks it, whatever comes after
 	slow       bool   // the place is the slowest one, in the words of the trade
 	sparse     string // why the readings cannot show it; "" if they can
 }
@@ -51,9 +54,11 @@ type question struct {
 	room    func(p path) float64 // K; nil: found by moving the limit's own temperature
 	unit    string
 	need    float64 // required, in unit; NaN for none
-	warm    bool    // colder food would be less favourable, so a bound from above proves nothing once it begins
+	warm    bool    // colder food would be less favourable
 	both    bool    // warmer food would be less favourable as well
 	steady  bool    // the error moves a whole course, so that the margin alone does not weigh against it
+	needs   bool    // a time that is needed, not one that is allowed
+	rises   bool    // a clock that starts at a crossing does so on the way up
 	adds    bool    // what was reached before a bound begins counts all the same
 }
 
@@ -109,6 +114,7 @@ func (v *view) judgePlaces(q question) Finding {
 		f.MarginK = finite(least)
 		if at != nil && f.MarginK != nil && f.Place != nil && !near(*at, *f.Place) {
 			if name := v.placeName(*at); name != f.PlaceName {
+				f.MarginPlace = name
 				f.Notes = append(f.Notes, say("note margin place", holes{"place": name}))
 			}
 		}
@@ -128,7 +134,7 @@ func (v *view) judgePlaces(q question) Finding {
 		f.Why = why
 		return f
 	}
-	f.Why = v.sentence(&f, o, v.weigh(&f, o, q, cs))
+	f.Why = v.sentence(&f, o, v.weigh(&f, o, q, s, cs))
 	return f
 }
 
@@ -422,7 +428,7 @@ func worstAt(q question, cs []candidate, t tilt) outcome {
 }
 
 // weigh applies the error band and the bound of the history to the verdict, and says so in the tail of the sentence.
-func (v *view) weigh(f *Finding, o outcome, q question, cs []candidate) (tail string) {
+func (v *view) weigh(f *Finding, o outcome, q question, s scope, cs []candidate) (tail string) {
 	if v.errK > 0 || v.l.clocked() {
 		word := ""
 		if o.verdict == Met && v.unsure(f, q, cs) {
@@ -446,16 +452,16 @@ func (v *view) weigh(f *Finding, o outcome, q question, cs []candidate) (tail st
 			return say(word, h) + v.turns(f)
 		}
 	}
-	if f.Verdict == Met && q.warm && v.h.Bound != "" && v.past(v.h.BoundFromS) && !same(v.l.Where.Name, "medium") {
-		if q.adds && v.sure(q, cs) {
-			return ""
+	if !v.proved(f.Verdict, q, s, cs) {
+		f.Verdict = CannotTell
+		word := "bound"
+		switch {
+		case v.single():
+			word = "bound once"
+		case v.l.clocked():
+			word = "bound clock"
 		}
-		f.Verdict = CannotTell
-		return say("bound", holes{"bound": v.h.Bound, "at": clockTime(v.h.BoundFromS)})
-	}
-	if f.Verdict == NotMet && (!q.warm || q.both) && v.h.Bound != "" && !same(v.l.Where.Name, "medium") && !v.lost(q, cs) {
-		f.Verdict = CannotTell
-		return say("bound", holes{"bound": v.h.Bound, "at": clockTime(v.h.BoundFromS)})
+		return say(word, holes{"bound": v.h.Bound, "at": clockTime(v.h.BoundFromS)})
 	}
 	if o.sparse != "" && f.Verdict == Met {
 		f.Verdict = CannotTell
@@ -486,16 +492,6 @@ func (v *view) several() bool {
 	return v.single() || l.clocked() || l.FromC != nil && (l.ToC != nil || l.ReferenceC != nil)
 }
 
-// lost tells whether a limit that colder food would meet was missed before the temperatures became bounds.
-func (v *view) lost(q question, cs []candidate) bool {
-	for _, c := range cs {
-		if q.measure(v.dropFrom(c.path), tilt{errK: -v.errK}).verdict == NotMet {
-			return true
-		}
-	}
-	return false
-}
-
 // turns says what to do where a step that ends by Until ends at the very limit; "" elsewhere.
 func (v *view) turns(f *Finding) string {
 	for _, sp := range v.h.Spans {
@@ -504,37 +500,6 @@ func (v *view) turns(f *Finding) string {
 		}
 	}
 	return ""
-}
-
-// sure tells whether a limit is met by what was reached before the temperatures became bounds.
-func (v *view) sure(q question, cs []candidate) bool {
-	for _, c := range cs {
-		if q.measure(v.dropFrom(c.path), tilt{errK: v.errK}).verdict != Met {
-			return false
-		}
-	}
-	return true
-}
-
-// past tells whether the stages of the limit go on after an instant.
-func (v *view) past(t float64) bool {
-	n := len(v.stages)
-	return n > 0 && v.stages[n-1].b > t+sameS
-}
-
-// dropFrom replaces a course from an instant on by absolute cold: what a bound from above leaves certain.
-func (v *view) dropFrom(p path) path {
-	t := v.h.BoundFromS
-	i := sort.SearchFloat64s(p.t, t)
-	if i >= len(p.t) {
-		return p
-	}
-	q := path{t: append(append([]float64(nil), p.t[:i+1]...), p.t[i:]...)}
-	q.c = append(append([]float64(nil), p.c[:i+1]...), make([]float64, len(p.t)-i)...)
-	for k := i + 1; k < len(q.c); k++ {
-		q.c[k] = -273.15
-	}
-	return q
 }
 
 // blank is a finding without numbers.

@@ -41,7 +41,10 @@ func judgeEnd(v *view) Finding {
 	q.measure = func(p path, t tilt) outcome {
 		worst := none(NotApplicable, "end nowhere")
 		worst.bad = math.Inf(-1)
-		for _, at := range instants(p, t) {
+		shown := t
+		shown.bound = false
+		last := instants(p, shown)
+		for i, at := range instants(p, t) {
 			o := none(NotMet, word)
 			o.at = at
 			if l.TimeS != nil {
@@ -52,13 +55,19 @@ func judgeEnd(v *view) Finding {
 				o.holes = holes{"when": clockTime(at)}
 			} else {
 				c := p.value(at)
+				if t.bound {
+					c = p.highest(at, math.Min(last[i], v.c.end))
+				}
 				o.value, o.bad = c, -sign*c
 				o.holes = holes{"value": l.degrees(c, int(-sign)), "when": clockTime(at)}
 				kept := l.warmSide(level + t.errK + t.ownK)
 				if sign < 0 {
 					kept = l.coldSide(level - t.errK - t.ownK)
 				}
-				if kept.holds(c) {
+				switch {
+				case t.bound && sign > 0 && last[i] > at+sameS: // at either instant it may be colder
+					o.verdict = CannotTell
+				case kept.holds(c):
 					o.verdict = Met
 				}
 			}

@@ -9,7 +9,7 @@ var HeatWithin = &Kind{Name: "heat", Unit: "min", Needs: [][]string{{"To"}, {"Ti
 
 func judgeHeat(v *view) Finding {
 	ws := v.windows()
-	q := question{unit: "min", need: *v.l.TimeS / 60, warm: true, adds: true}
+	q := question{unit: "min", need: *v.l.TimeS / 60, warm: true, rises: true, adds: true}
 	q.measure = func(p path, t tilt) outcome {
 		worst := none(NotApplicable, "heat nowhere")
 		worst.bad = math.Inf(-1)

@@ -18,26 +18,30 @@ func judgeHold(v *view) Finding {
 	if *l.TimeS == 0 {
 		return v.judgePlaces(v.reached())
 	}
-	q := question{unit: "min", need: *l.TimeS / 60, warm: l.ToC == nil, adds: true}
+	q := question{unit: "min", need: *l.TimeS / 60, warm: l.ToC == nil, needs: true, adds: true}
 	q.measure = func(p path, t tilt) outcome {
 		r := v.heldRegion(t)
 		sp := p.stay(v.stages, r)
-		held := sp.counted(l.Counting)
+		count := v.counting(t)
+		held := sp.counted(count)
 		o := none(NotMet, "hold above")
 		if l.ToC != nil {
 			o.word = "hold below"
 		}
-		o.value, o.bad, o.margin = held.s/60, -held.s/60-v.depth(p, r, held.s, l.Counting), held.s-*l.TimeS
+		o.value, o.bad, o.margin = held.s/60, -held.s/60-v.depth(p, r, held.s, count), held.s-*l.TimeS
 		o.slow = l.ToC == nil
 		if !t.rank {
 			o.holes = holes{"value": lasting(held.s, -1), "count": strconv.Itoa(sp.count)}
 		}
 		o.start, o.end, o.at = when(held, sp.count)
-		again := l.Counting == Once && sp.count > 1
+		o.again = count == Once && sp.count > 1
 		switch {
-		case again:
+		case o.again:
 			o.word, o.bad, o.margin = "hold again", 1e5-held.s/60, math.NaN()
-		case l.enough(held.s, *l.TimeS):
+		case !l.enough(held.s, *l.TimeS):
+		case t.bound && count == Once && v.mayMultiply(held, l.ToC != nil):
+			o.verdict = CannotTell
+		default:
 			o.verdict = Met
 		}
 		if t == (tilt{}) && o.verdict == Met {

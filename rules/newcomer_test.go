@@ -173,7 +173,7 @@ func TestStagesInTheSentence(t *testing.T) {
 func TestMarginOfAnotherPlace(t *testing.T) {
 	h := records(t, "cool 0-300", trace(t, "slow", 0, "0:70 10:60 200:20 201:4 300:4"), trace(t, "warm", 5, "0:70 10:60 100:20 130:5 300:5"))
 	f := one(t, Limit{Kind: CoolWithin, FromC: c(60), ToC: c(21), TimeS: min_(240), Clock: crossing}, h)
-	if f.PlaceName == "" || len(f.Notes) != 1 || !strings.Contains(f.Notes[0], "another place") {
+	if f.PlaceName == "" || len(f.Notes) != 1 || !strings.Contains(f.Notes[0], "another place") || f.MarginPlace == "" || !strings.Contains(f.Notes[0], f.MarginPlace) {
 		t.Errorf("%s: %v", f.Why, f.Notes)
 	}
 }

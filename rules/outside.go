@@ -9,7 +9,7 @@ var Outside = &Kind{Name: "outside", Unit: "min", Needs: [][]string{{"From"}, {"
 func judgeOutside(v *view) Finding {
 	l := v.l
 	strict := l.Compare == MoreThan || l.Compare == LessThan
-	q := question{unit: "min", need: 0, warm: true, both: true}
+	q := question{unit: "min", need: 0}
 	q.room = func(p path) float64 {
 		deep := math.Inf(-1) // the deepest point in the band, K; negative: how far off the nearest is
 		for _, iv := range v.stages {
@@ -27,6 +27,9 @@ func judgeOutside(v *view) Finding {
 		r := between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK+t.ownK)
 		if strict {
 			r.slack = sameK
+		}
+		if t.bound {
+			p = v.cappedFrom(p, (r.lo+r.hi)/2)
 		}
 		sp := p.stay(v.stages, r)
 		o := none(NotMet, "outside")

@@ -48,12 +48,12 @@ func judgeStay(v *view, sign float64) Finding {
 // excursion is a limit on how long a place may be beyond the temperature.
 func (v *view) excursion(level, sign float64) question {
 	l := v.l
-	c := l.Counting
-	if c == NotCounted {
-		c = Continuous // Time is the longest excursion
-	}
 	q := question{unit: "min", need: *l.TimeS / 60, warm: sign > 0}
 	q.measure = func(p path, t tilt) outcome {
+		c := v.counting(t)
+		if c == NotCounted {
+			c = Continuous // Time is the longest excursion
+		}
 		out, word := below(level+t.errK+t.ownK), "out above"
 		switch strict := l.Compare == MoreThan || l.Compare == LessThan; {
 		case sign < 0 && strict:

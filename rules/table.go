@@ -10,7 +10,7 @@ var HoldTable = &Kind{Name: "hold table", Unit: "1", Needs: [][]string{{"Table"}
 func judgeTable(v *view) Finding {
 	l := v.l
 	rows := sortedRows(l.Table)
-	q := question{unit: "1", need: 1, warm: true, adds: true}
+	q := question{unit: "1", need: 1, warm: true, needs: true, adds: true}
 	q.measure = func(p path, t tilt) outcome {
 		best := none(NotMet, "table missed")
 		best.bad, best.value = math.Inf(1), 0
@@ -76,9 +76,10 @@ func (v *view) row(p path, t tilt, row *Row, top float64) outcome {
 	if r.holds(top) {
 		sp = p.stay(v.stages, r)
 	}
-	held := sp.counted(v.l.Counting)
+	count := v.counting(t)
+	held := sp.counted(count)
 	o.value, o.bad, o.margin = held.s/row.S, -held.s/row.S, held.s-row.S
-	if d := v.depth(p, r, held.s, v.l.Counting); d < 0 {
+	if d := v.depth(p, r, held.s, count); d < 0 {
 		o.bad -= d
 	} else {
 		o.bad -= rowTie * d
@@ -88,8 +89,10 @@ func (v *view) row(p path, t tilt, row *Row, top float64) outcome {
 		o.holes["value"] = lasting(held.s, -1)
 	}
 	switch {
-	case v.l.Counting == Once && sp.count > 1:
+	case count == Once && sp.count > 1:
 		o.margin = math.NaN()
+	case t.bound && count == Once && v.mayMultiply(held, false):
+		o.verdict = CannotTell
 	case v.l.enough(held.s, row.S):
 		o.verdict, o.word = Met, "table met"
 	}

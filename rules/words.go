@@ -33,6 +33,8 @@ var words = map[string]string{
 	"clock elsewhere":     "; but another place was exactly at {start} and not above it, and counted from there the limit is not met, so it cannot be told.",
 	"never above":         "Nothing was above {start}: the warmest place judged reached {top}, so the limit does not apply.",
 	"bound":               "; but from {at} on the temperatures are only bounds ({bound}), so it cannot be told.",
+	"bound clock":         "; but from {at} on the temperatures are only bounds ({bound}), and the clock may run from another instant than they show, so it cannot be told.",
+	"bound once":          "; but from {at} on the temperatures are only bounds ({bound}), and there may be more periods or fewer than they show, so it cannot be told.",
 	"sparse":              "; but the readings there are {gap} apart and cannot show {time}, so it cannot be told.",
 
 	"hold above":        "{who} stayed at or above {from} for {value}, and {time} is needed.",
