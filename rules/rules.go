@@ -132,7 +132,6 @@ type Finding struct {
 	Unit            string   // min, °C, log10, K, 1, or "" for stated
 	MarginK         *float64 // room in the limit's own temperature; negative: lacking
 	MarginPlace     string   // the place of MarginK in words where it is not Place; "" elsewhere
-	MarginPlace     string   // the place of MarginK in words where it is not Place; "" elsewhere
 	MarginS         *float64 // room in time; negative: lacking
 	AtS             *float64 // deciding time from the start of the chain
 	Place           *model.Place
