@@ -415,7 +415,11 @@ func (t *labels) best(at []vg.Point, w, h vg.Length, in vg.Rectangle) (vg.Rectan
 // cover is how much of what is taken a rectangle covers; it stops counting where most is reached.
 func (t *labels) cover(r vg.Rectangle, most float64) float64 {
 	cost := 0.0
-	for _, b := range t.boxes {
+	for i := range t.boxes {
+		b := &t.boxes[i]
+		if b.Max.X <= r.Min.X || b.Min.X >= r.Max.X || b.Max.Y <= r.Min.Y || b.Min.Y >= r.Max.Y { // nearly all of them
+			continue
+		}
 		dx, dy := min(r.Max.X, b.Max.X)-max(r.Min.X, b.Min.X), min(r.Max.Y, b.Max.Y)-max(r.Min.Y, b.Min.Y)
 		if dx > 0 && dy > 0 {
 			if cost += 1 + float64(dx*dy); cost >= most {

@@ -5,6 +5,7 @@ import (
 	"sort"
 	"strings"
 	"sync"
+	"unicode"
 
 	"codeberg.org/go-fonts/dejavu/dejavusans"
 	"codeberg.org/go-fonts/dejavu/dejavusansbold"
@@ -69,45 +70,81 @@ func chartFont(size font.Length, bold bool) font.Font {
 
 // widthMM is the width of clean text in mm at a size in pt.
 func widthMM(s string, size float64, bold bool) float64 {
-	w := &faces().width[btoi(bold)]
+	return toMM(thousandths(s, &faces().width[btoi(bold)]), size)
+}
+
+// thousandths is the width of clean text in thousandths of the type size.
+func thousandths(s string, w *[65536]int16) int {
 	sum := 0
 	for _, r := range s {
 		if r < 65536 && w[r] > 0 {
 			sum += int(w[r])
 		}
 	}
-	return float64(sum) / 1000 * size * mmPerPt
+	return sum
 }
+
+// toMM turns thousandths of a type size in pt into mm.
+func toMM(n int, size float64) float64 { return float64(n) / 1000 * size * mmPerPt }
 
 // wrap breaks clean text into lines no wider than width mm; there is at least one line. A word that is too long is cut.
 func wrap(s string, width, size float64, bold bool) []string {
 	var lines []string
-	for _, par := range strings.Split(s, "\n") {
-		line, before := "", len(lines)
-		for _, word := range tokens(par) {
-			try := word
-			if line != "" {
-				try = line + " " + word
-			}
-			if widthMM(try, size, bold) <= width {
-				line = try
-				continue
-			}
-			if line != "" {
-				lines = append(lines, line)
-			}
-			for widthMM(word, size, bold) > width {
-				n := fitting(word, width, size, bold)
-				lines = append(lines, word[:n])
-				word = word[n:]
-			}
-			line = word
-		}
-		if line != "" || len(lines) == before {
-			lines = append(lines, line)
+	w := &faces().width[btoi(bold)]
+	for par := range strings.SplitSeq(s, "\n") {
+		if tidy(par) && toMM(thousandths(par, w), size) <= width { // as most are
+			lines = append(lines, par)
+		} else {
+			lines = wrapOne(lines, par, width, size, bold)
 		}
 	}
 	return lines
+}
+
+// wrapOne appends the lines of a paragraph.
+func wrapOne(lines []string, par string, width, size float64, bold bool) []string {
+	w, before := &faces().width[btoi(bold)], len(lines)
+	var line []string // the words of the line so far
+	long := 0         // and their width, thousandths
+	end := func() {
+		if len(line) > 0 {
+			lines, line = append(lines, strings.Join(line, " ")), line[:0]
+		}
+	}
+	for _, word := range tokens(par) {
+		n := thousandths(word, w)
+		if len(line) > 0 {
+			if toMM(long+int(w[' '])+n, size) <= width {
+				line, long = append(line, word), long+int(w[' '])+n
+				continue
+			}
+			end()
+		}
+		for toMM(n, size) > width {
+			k := fitting(word, width, size, bold)
+			lines, word = append(lines, word[:k]), word[k:]
+			n = thousandths(word, w)
+		}
+		if word != "" {
+			line, long = append(line, word), n
+		}
+	}
+	if end(); len(lines) == before {
+		lines = append(lines, "")
+	}
+	return lines
+}
+
+// tidy tells whether the words of a text stand one blank apart.
+func tidy(s string) bool {
+	before := ' '
+	for _, r := range s {
+		if r == ' ' && before == ' ' || r != ' ' && unicode.IsSpace(r) {
+			return false
+		}
+		before = r
+	}
+	return s == "" || before != ' '
 }
 
 // units stay on the line of their number.

@@ -77,10 +77,10 @@ func (p *paper) addPage() {
 // leaf is the current page.
 func (p *paper) leaf() *leaf { return p.sheets[p.page-1] }
 
-// x and y append a place.
+// xy appends a place. It is rounded as seen from the top, so that A4 and Letter are alike to the last digit.
 func (p *paper) xy(b []byte, x, y float64) []byte {
 	b = append(appendPt(b, x/mmPerPt), ' ')
-	return append(appendPt(b, (p.tall-y)/mmPerPt), ' ')
+	return append(appendPt(b, (math.Round(p.tall/mmPerPt*100)-math.Round(y/mmPerPt*100))/100), ' ')
 }
 
 // setColor makes a colour the one of lines (RG) or of areas and text (rg), of which now is the present one.
