@@ -157,3 +157,67 @@ func TestFilmStandsForEvaporation(t *testing.T) {
 		}
 	}
 }
+
+// TestBesideInOverview shows what must be read with a verdict in every row, with a margin or without, and once.
+func TestBesideInOverview(t *testing.T) {
+	const rise = "Met only through the rise after the cook."
+	for _, x := range []struct {
+		name string
+		row  Row
+		want []string
+		not  string
+	}{
+		{"with a margin", Row{Verdict: rules.Met, Why: "The slowest place took 12 min. " + rise, Beside: rise, MarginK: ptr(3.27)}, []string{"room 3.2 °C", rise}, "took 12 min"},
+		{"without one", Row{Verdict: rules.CannotTell, Why: "Something is missing. " + rise, Beside: rise}, []string{"Something is missing.", rise}, "room"},
+		{"a margin of another place", Row{Verdict: rules.Met, MarginK: ptr(3.27), MarginPlace: "14 mm above the underside"}, []string{"room 3.2 °C (5.8 °F) at another place (14 mm above the underside)"}, "Met only"},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			x.row.Product, x.row.Deciding = "Stew", "Core"
+			text := pdfText(t, summaryPDF(t, roastHead(), []Row{x.row}))
+			list, _, _ := strings.Cut(text, say("plan title"))
+			var flat []string // the columns stand beside each other in the text of the page
+			for _, w := range x.want {
+				for _, word := range strings.Fields(w) {
+					if !strings.Contains(list, word) {
+						flat = append(flat, word)
+					}
+				}
+			}
+			if len(flat) > 0 || strings.Contains(list, x.not) || strings.Count(list, "through") > 1 {
+				t.Errorf("%q are missing or something is printed twice or %q is printed:\n%s", flat, x.not, list)
+			}
+		})
+	}
+	p := roast(t, model.Brick, rules.Met)
+	p.Judgement.Findings[0].CarryOver = rise
+	if r := p.Row(); !strings.Contains(r.Beside, rise) || !strings.HasSuffix(r.Why, r.Beside) || !finite(r.MarginK) {
+		t.Errorf("%+v", r)
+	}
+}
+
+// TestMarginOfAnotherPlace says on the front pages, in the text and in the overview whose margin it is; the card says it in its notes.
+func TestMarginOfAnotherPlace(t *testing.T) {
+	h, p := roastHead(), roast(t, model.Brick, rules.Met)
+	const elsewhere = "at another place (4 mm above the underside)"
+	f := p.decides().finding
+	f.MarginPlace = "4 mm above the underside"
+	f.Notes = append(f.Notes, "The margin in temperature is that of another place (4 mm above the underside).")
+	if row := p.Row(); !strings.Contains(row.Room(h), elsewhere) {
+		t.Error(row.Room(h))
+	}
+	x := &sheet{doc: newDoc(h, "T"), p: p, decides: p.decides(), order: p.worstFirst()}
+	if s := x.headline(); !strings.Contains(s, elsewhere) {
+		t.Error(s)
+	}
+	if s := x.marginWords(f); strings.Contains(s, elsewhere) || !strings.Contains(s, "room") {
+		t.Errorf("the card says it twice: %s", s)
+	}
+	audit := pdfText(t, productPDF(t, h, p))
+	if _, audit, _ = strings.Cut(audit, "Report for the audit"); !strings.Contains(audit, elsewhere) {
+		t.Error("the front page for the auditor does not say whose margin it prints")
+	}
+	f.MarginPlace = ""
+	if s := x.headline(); strings.Contains(s, "another place") {
+		t.Error(s)
+	}
+}

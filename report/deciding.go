@@ -177,6 +177,8 @@ type Row struct {
 	Deciding         string   // the limit that settles the verdict
 	MarginK          *float64 // of the deciding limit
 	MarginS          *float64
+	MarginPlace      string // the place of MarginK where it is not the deciding one; "" elsewhere
+	Beside           string // what must be read with the verdict, in sentences; Why ends with it
 	Problems         int    // warnings that touch the product
 	File             string // name of its document; set by whoever names the files
 	tight            float64
@@ -189,6 +191,7 @@ func (p *Product) Row() Row {
 		f := d.finding
 		g := p.telling(f)
 		r.MarginK, r.MarginS, r.tight = lackingOnly(f, g.MarginK), lackingOnly(f, g.MarginS), p.tightness(f)
+		r.MarginPlace = f.MarginPlace
 		if f.Limit != nil {
 			r.Deciding = f.Limit.Name
 		}
@@ -196,7 +199,8 @@ func (p *Product) Row() Row {
 			r.Why = f.Why
 		}
 	}
-	r.Why = strings.TrimSpace(strings.Join(append([]string{r.Why}, p.beside()...), " "))
+	r.Beside = strings.Join(p.beside(), " ")
+	r.Why = strings.TrimSpace(r.Why + " " + r.Beside)
 	return r
 }
 

@@ -266,13 +266,20 @@ func lacks(l *rules.Limit) string {
 	return strings.Join(s, ", ")
 }
 
-// room says a finding's margin in words: rounded down, so that it never looks larger than it is.
+// room says a finding's margin in words: rounded down, so that it never looks larger than it is; and whose it is where the margin in
+// temperature is not that of the place that decides.
 func (h *Head) room(f *rules.Finding) string {
 	var have, lack []string
+	kelvin := func(v float64, r rounding) string {
+		if f.MarginPlace != "" {
+			return say("room elsewhere", h.difference(v, r), f.MarginPlace)
+		}
+		return h.difference(v, r)
+	}
 	for _, m := range []struct {
 		v     *float64
 		write func(v float64, r rounding) string
-	}{{f.MarginK, h.difference}, {f.MarginS, duration}} {
+	}{{f.MarginK, kelvin}, {f.MarginS, duration}} {
 		switch {
 		case !finite(m.v), *m.v >= 0 && f.Verdict == rules.NotMet: // what is missed has no room
 		case *m.v >= 0:

@@ -120,7 +120,7 @@ func tallied(n [4]int) string {
 		n     int
 		words string
 	}{{n[rules.Met], say("count met", n[rules.Met])}, {n[rules.NotMet], say("count not met", n[rules.NotMet])},
-		{n[rules.CannotTell], say("count cannot tell", n[rules.CannotTell])}, {n[rules.NotApplicable], say("count not applicable", n[rules.NotApplicable])}} {
+		{n[rules.CannotTell], say("count cannot tell", n[rules.CannotTell])}, {n[rules.NotApplicable], counted(n[rules.NotApplicable], "count not applicable")}} {
 		if c.n > 0 {
 			s = append(s, c.words)
 		}
@@ -155,7 +155,7 @@ func (x *sheet) operator() {
 		d.put(d.left, d.y-0.25*height(size), s, size, true)
 	}
 	if p.History != nil {
-		d.para(shorten(d.clean(say("operator process", p.Process, len(p.History.Spans), duration(x.decides.history.EndS(), nearest))), frameWide, kitchen, false), style{size: kitchen, after: 2})
+		d.para(shorten(d.clean(say("operator process", p.Process, counted(len(p.History.Spans), "steps"), duration(x.decides.history.EndS(), nearest))), frameWide, kitchen, false), style{size: kitchen, after: 2})
 	}
 	x.verdictBox()
 	below := x.advice(true)
@@ -671,7 +671,9 @@ func (x *sheet) differs() *model.Span {
 
 // marginWords is the room of a finding, and what sets it where that is the end of a step.
 func (x *sheet) marginWords(f *rules.Finding) string {
-	s := x.head.room(f)
+	g := *f
+	g.MarginPlace = "" // the notes of the card say it
+	s := x.head.room(&g)
 	if step := x.p.madeByUntil(f); step != "" {
 		s += say("room until", x.head.difference(*f.MarginK, down), step)
 	}

@@ -3,8 +3,6 @@ package report
 import (
 	"io"
 	"strings"
-
-	"slowpoint/rules"
 )
 
 // WriteSummaryPDF writes the overview of a plan: one line a product, the tightest first. Thousands of rows are fine.
@@ -43,7 +41,7 @@ func (d *doc) summary(rows []Row) {
 		n[overall(r.Verdict)]++
 	}
 	list = listed(nil, list)
-	sentence := say("summary sentence", len(rows), tallied(n))
+	sentence := say("summary sentence", counted(len(rows), "products calculated"), tallied(n))
 	if len(h.NotCalculated) > 0 {
 		sentence += say("summary refused", len(h.NotCalculated))
 	}
@@ -55,10 +53,12 @@ func (d *doc) summary(rows []Row) {
 	var cells [][]string
 	for i := range list {
 		r := &list[i]
-		f := &rules.Finding{MarginK: r.MarginK, MarginS: r.MarginS}
-		margin := h.room(f)
-		if margin == "" {
+		margin := r.Room(h)
+		switch {
+		case margin == "":
 			margin = r.Why
+		case r.Beside != "":
+			margin += "\n" + r.Beside
 		}
 		name := r.Product
 		if r.File != "" {
@@ -138,6 +138,6 @@ func (d *doc) noted() {
 	x := &sheet{doc: d}
 	x.problems(ps[:min(len(ps), most)])
 	if len(ps) > most {
-		d.text(say("summary more", len(ps)-most))
+		d.text(counted(len(ps)-most, "summary more"))
 	}
 }

@@ -160,6 +160,35 @@ func TestCautionTextIsInSafety(t *testing.T) {
 	}
 }
 
+// One of a kind is not several.
+func TestOneIsNotSeveral(t *testing.T) {
+	h := roastHead()
+	p := roast(t, model.Slab, rules.Met)
+	p.Steps, p.Low = p.Steps[:1], nil
+	var err error
+	if p.History, err = model.Solve(p.Product, p.Steps, model.Options{}); err != nil {
+		t.Fatal(err)
+	}
+	p.Samples, p.Judgement = p.History.Sample(60), rules.Judgement{Verdict: rules.Met, Findings: p.Judgement.Findings[:1]}
+	p.Judgement.Findings = append(p.Judgement.Findings, rules.Finding{Limit: p.Judgement.Findings[0].Limit, Level: "must", Verdict: rules.NotApplicable})
+	for len(h.Problems) < 201 {
+		h.Problems = append(h.Problems, h.Problems[0])
+	}
+	docs := map[string]string{"product": pdfText(t, productPDF(t, h, p)), "overview": pdfText(t, summaryPDF(t, h, manyRows(1))), "text": writeText(t, h, p)}
+	for _, c := range []struct{ doc, want string }{{"product", ": 1 step, 1 h 30 min"}, {"product", "1 does not apply"}, {"text", "1 does not apply"}, {"overview", "1 product calculated:"},
+		{"overview", "1 further note is in"}} {
+		if !strings.Contains(docs[c.doc], c.want) {
+			t.Errorf("%s: %q is missing", c.doc, c.want)
+		}
+	}
+	several := regexp.MustCompile(`\b1 (products|steps|problems|cases|notes|findings|warnings|do) `)
+	for name, text := range docs {
+		if m := several.FindString(text); m != "" {
+			t.Errorf("%s: %q", name, m)
+		}
+	}
+}
+
 // No text of the documents judges a food or a process.
 func TestWordsDoNotJudge(t *testing.T) {
 	bad := regexp.MustCompile(`(?i)\b(validated|approved|certified|guarantee[ds]?|compliant|compliance|safe|safely|release[ds]?|discard(ed)?|pass(es|ed)?|passing)\b`)
@@ -187,6 +216,11 @@ func TestWordsAreComplete(t *testing.T) {
 				t.Fatal(err)
 			}
 			source += string(b)
+		}
+	}
+	for _, m := range regexp.MustCompile(`counted\([^\n]*?, "([^"]+)"\)`).FindAllStringSubmatch(source, -1) {
+		if many, one := words[m[1]], words[m[1]+" one"]; !strings.HasPrefix(many, "%d ") || !strings.HasPrefix(one, "1 ") {
+			t.Errorf("%q is counted, and its texts for several and for one are %q and %q", m[1], many, one)
 		}
 	}
 	asked := regexp.MustCompile(`say\("([^"]+)"[,)]`).FindAllStringSubmatch(source, -1)

@@ -10,7 +10,6 @@ import (
 
 	"slowpoint/model"
 	"slowpoint/model/cell"
-	"slowpoint/rules"
 )
 
 // Text writes report.txt: what the PDFs hold, as plain text that a screen reader reads in order. It stands in the words of
@@ -423,7 +422,7 @@ func (t *Text) list() {
 		if r.Deciding != "" {
 			s += fmt.Sprintf(textWords["list deciding"], r.Deciding)
 		}
-		if room := t.h.room(&rules.Finding{MarginK: r.MarginK, MarginS: r.MarginS}); room != "" {
+		if room := r.Room(t.h); room != "" {
 			s += fmt.Sprintf(textWords["list room"], room)
 		}
 		if r.Why != "" {
