@@ -47,17 +47,17 @@ type span struct{ least, most float64 }
 // The spans are common practice, no source: wide enough for any food and kitchen, narrow enough to catch a number typed in the unit
 // of another heading.
 var (
-	usualSize, possibleSize         = &span{0.002, 1}, &span{1e-5, 10}     // m
-	usualStart, possibleStart       = &span{-30, 110}, &span{-273.15, 300} // °C
-	usualMedium, possibleMedium     = &span{-60, 350}, &span{-273.15, 600} // °C
-	usualLimit                      = &span{-273.15, 125}                  // °C
-	usualFilm, possibleFilm         = &span{0, 5000}, &span{0, 1e6}        // W/(m²·K)
-	usualSpeed, possibleSpeed       = &span{0, 15}, &span{0, 100}          // m/s
-	usualDuration                   = &span{0, 60 * 86400}                 // s
-	usualConduct, possibleConduct   = &span{0.1, 0.9}, &span{0.02, 3}      // W/(m·K)
-	usualDensity, possibleDensity   = &span{300, 1500}, &span{50, 3000}    // kg/m³
-	usualSpecific, possibleSpecific = &span{1500, 4300}, &span{500, 5000}  // J/(kg·K)
-	usualZ, possibleZ               = &span{3, 40}, &span{1, 100}          // K
+	usualSize, possibleSize         = &span{0.002, 1}, &span{1e-5, 10}              // m
+	usualStart, possibleStart       = &span{-30, 110}, &span{-273.15, 300}          // °C
+	usualMedium, possibleMedium     = &span{-60, 350}, &span{-273.15, 600}          // °C
+	usualLimit                      = &span{-273.15, 125}                           // °C
+	usualFilm, possibleFilm         = &span{0, 5000}, &span{0, 1e6}                 // W/(m²·K)
+	usualSpeed, possibleSpeed       = &span{0, 15}, &span{0, 100}                   // m/s
+	usualDuration, possibleDuration = &span{0, 60 * 86400}, &span{0.6, 400 * 86400} // s
+	usualConduct, possibleConduct   = &span{0.1, 0.9}, &span{0.02, 3}               // W/(m·K)
+	usualDensity, possibleDensity   = &span{300, 1500}, &span{50, 3000}             // kg/m³
+	usualSpecific, possibleSpecific = &span{1500, 4300}, &span{500, 5000}           // J/(kg·K)
+	usualZ, possibleZ               = &span{3, 40}, &span{1, 100}                   // K
 )
 
 const (
@@ -217,7 +217,7 @@ var Sheets = []*Sheet{
 		{Heading: "Product", Help: "only for a row that replaces the process's row of that Step for one product"},
 		{Heading: "Step", Needed: true, Help: "a name of its own within the process"},
 		{Heading: "Stage", Needed: true, Choices: stageNames, Help: "what the step is for; limits name stages"},
-		{Heading: "Duration", Quantity: &unit.Duration, Unit: "min", Usual: usualDuration, Slip: slipTime, Needed: true, Least: Positive, Help: "the longest that the step may last"},
+		{Heading: "Duration", Quantity: &unit.Duration, Unit: "min", Usual: usualDuration, Possible: possibleDuration, Slip: slipTime, Needed: true, Least: Positive, Help: "the longest that the step may last"},
 		{Heading: "Until slowest point reaches", Quantity: &unit.Temperature, Unit: "°C", Help: "the step ends when the coldest place (cook, reheat, thaw, hold hot) or the hottest place (other stages) reaches this, at the latest after Duration"},
 	}, surroundings(), []*Column{
 		{Heading: "Equipment", Help: "printed on the report"},

@@ -7,6 +7,7 @@ import (
 	"fmt"
 	"io"
 	"os"
+	"regexp"
 	"strings"
 	"unicode/utf8"
 )
@@ -50,6 +51,13 @@ func csvGrid(name string, data []byte) *grid {
 		return g
 	}
 	data = bytes.TrimRight(data, "\x00")
+	if i := bytes.IndexByte(data, 0); i >= 0 {
+		g.refused, g.mend = fill(csvUnreadable.msg, []string{fmt.Sprintf("line %d holds zero bytes, so a part of it is lost", 1+bytes.Count(data[:i], []byte("\n")))}), "ask for a fresh copy, or save the sheet as CSV UTF-8 again"
+		return g
+	}
+	if !bytes.ContainsRune(data, '\n') { // lines end with \r alone, as old spreadsheet programs on the Mac have it
+		data = bytes.ReplaceAll(data, []byte("\r"), []byte("\n"))
+	}
 	sheet := sheetOf(g.name)
 	best, score := ',', -1
 	for _, d := range []rune{',', ';', '\t'} {
@@ -121,11 +129,11 @@ func csvRows(data []byte, d rune, most int) (rows []gridRow, refused string) {
 		for i, f := range rec {
 			breaks += strings.Count(f, "\n")
 			if f = tidy(f); f != "" {
-				if i >= mostColumns || len(f) > mostText {
+				if i >= mostColumns || tooLong(f, mostText) {
 					return rows, fill(csvUnreadable.msg, []string{fmt.Sprintf("line %d has more than %d columns or a cell of more than %d characters", line, mostColumns, mostText)})
 				}
 				k := text
-				if brokenWords[f] {
+				if failed(f) {
 					k = broken
 				}
 				row.cells = append(row.cells, entry{text: strings.Clone(f), col: int32(i + 1), kind: k})
@@ -146,8 +154,15 @@ func csvRows(data []byte, d rune, most int) (rows []gridRow, refused string) {
 	}
 }
 
-// brokenWords are what spreadsheets print for a formula that failed.
-var brokenWords = map[string]bool{"#N/A": true, "#REF!": true, "#DIV/0!": true, "#VALUE!": true, "#NAME?": true, "#NUM!": true, "#NULL!": true, "#NV": true, "#WERT!": true, "#BEZUG!": true}
+// tooLong tells whether a text has more than most characters.
+func tooLong(s string, most int) bool { return len(s) > most && utf8.RuneCountInString(s) > most }
+
+// failed tells whether a text is what spreadsheets print for a formula that failed, in any of their languages: #REF!, #NAME?, #N/A, Err:502.
+func failed(s string) bool {
+	return s != "" && (s[0] == '#' || s[0] == 'E') && failure.MatchString(s)
+}
+
+var failure = regexp.MustCompile(`^(#[\p{Lu}\d/_]+[!?]|#N/[AD]|#NV|#GETTING_DATA|Err:\d{3})$`)
 
 func plainCSV(err error) string {
 	switch err {

@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"strings"
+	"unicode"
 
 	"golang.org/x/text/unicode/norm"
 )
@@ -74,11 +75,11 @@ func (r *gridRow) at(col int) *entry {
 	return &nothing
 }
 
-// tidy makes a typed word comparable for the eye: no surrounding or doubled blanks, composed letters.
+// tidy makes a typed word comparable for the eye: no surrounding or doubled blanks, nothing that cannot be seen, composed letters.
 func tidy(s string) string {
 	plain := true
 	for i := 0; i < len(s); i++ {
-		if s[i] >= 0x80 || s[i] < ' ' || s[i] == ' ' && (i == 0 || i == len(s)-1 || s[i-1] == ' ') {
+		if s[i] >= 0x7f || s[i] < ' ' || s[i] == ' ' && (i == 0 || i == len(s)-1 || s[i-1] == ' ') {
 			plain = false
 			break
 		}
@@ -86,7 +87,20 @@ func tidy(s string) string {
 	if plain {
 		return s
 	}
-	return norm.NFC.String(strings.Join(strings.Fields(strings.ToValidUTF8(s, "\uFFFD")), " "))
+	s = strings.Map(seen, strings.ToValidUTF8(s, "\uFFFD"))
+	return norm.NFC.String(strings.Join(strings.Fields(s), " "))
+}
+
+// seen drops what comes along with text copied from web pages and chats and cannot be seen: soft hyphens, zero-width blanks, marks of
+// direction and byte order. A control character counts as a blank. What joins letters or emoji stays.
+func seen(c rune) rune {
+	switch {
+	case c == '\u00ad', c == '\u200b', c == '\u200e', c == '\u200f', c == '\u2060', c == '\ufeff', c >= '\u202a' && c <= '\u202e', c >= '\u2066' && c <= '\u2069':
+		return -1
+	case unicode.IsControl(c):
+		return ' '
+	}
+	return c
 }
 
 // key makes a name comparable: without regard to case, blanks around it, or Unicode form.

@@ -1,6 +1,7 @@
 package workbook
 
 import (
+	"math"
 	"regexp"
 	"sort"
 	"strconv"
@@ -84,7 +85,8 @@ type timeTable struct {
 	rules.Table
 	because  cell.Errors
 	readings []echoes
-	aside    bool // one of its rows
+	aside    bool            // one of its rows
+	byC      map[float64]int // index of a row by its temperature, 1e-6 °C
 }
 
 // group is a row of Groups.
@@ -129,6 +131,25 @@ func (r *reader) readLimits() {
 	}
 }
 
+// against holds a row of a table against the rows before it: one temperature has one time, and what is hotter than the row before does
+// not take longer.
+func (tt *timeTable) against(l *line, c, s float64) {
+	k := math.Round(c * 1e6)
+	if i, there := tt.byC[k]; there && tt.Rows[i].S != s {
+		l.fault("Temperature", l.entry("Temperature").text, tableSameAt, strconv.Itoa(tt.Rows[i].At.Row))
+		return
+	}
+	if tt.byC == nil {
+		tt.byC = map[float64]int{}
+	}
+	tt.byC[k] = len(tt.Rows)
+	if n := len(tt.Rows); n > 0 {
+		if o := &tt.Rows[n-1]; c > o.C && s > o.S || c < o.C && s < o.S {
+			l.remark(cell.Warning, "Time", l.entry("Time").text, tableRising, strconv.Itoa(o.At.Row), o.Typed)
+		}
+	}
+}
+
 // unknown keeps what nobody can read as a limit for every product, so that none is met by what is missing.
 func (ls *limits) unknown(at cell.Ref, name string, e cell.Error) {
 	ls.plan.Limits = append(ls.plan.Limits, rules.Limit{At: at, Name: name, Kind: rules.Stated, Applies: rules.Applies{All: true},
@@ -151,6 +172,7 @@ func (ls *limits) readTables() {
 			ls.tables[key(name)] = tt
 		}
 		if at != nil && time != nil {
+			tt.against(l, at.Computed, time.Computed)
 			tt.Rows = append(tt.Rows, rules.Row{At: l.ref(), C: at.Computed, S: time.Computed, Typed: at.Typed + ", " + time.Typed})
 		}
 		reasons(&tt.because, l.because)

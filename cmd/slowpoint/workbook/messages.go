@@ -84,6 +84,9 @@ var (
 	foodPartly      = saying{"{1} is missing: measured properties are Conductivity, Density and Specific heat together", "fill it"}
 	foodTwice       = saying{"is there twice; a composition takes one row (the first is in row {1})", "keep one row, or give measured properties with At temperature"}
 	foodNoAt        = saying{"At temperature is missing: {1} has several rows, which make a table", "fill it in every row of the food"}
+	tableSameAt     = saying{"is the temperature of row {1} of the same table too, with another time", "give each row of a table a temperature of its own"}
+	tableRising     = saying{"does not go with row {1} ({2}): what is hotter takes less time", "check both rows"}
+	textTooLong     = saying{"is the beginning of a text of more than {1} characters", "shorten it"}
 	foodSameAt      = saying{"is the temperature of row {1} too", "give each row of a food a temperature of its own"}
 	foodUnlike      = saying{"differs from row {1} of the same food, which says {2}", "say it once, or the same in every row"}
 	airWithMeasured = saying{"is given beside measured properties, which already hold the air", "clear the cell"}

@@ -501,11 +501,24 @@ func (l *line) words(heading string) string {
 		return ""
 	}
 	s := e.text
+	if most := c.longest(); tooLong(s, most) {
+		l.fault(heading, string([]rune(s)[:40])+"…", textTooLong, strconv.Itoa(most))
+		return ""
+	}
 	if e.kind == figure && e.form == date {
 		s = isoDate(e.text, l.t.grid.is1904)
 	}
 	l.note(heading, s, s, "")
 	return s
+}
+
+// longest is how many characters a column takes: a remark goes on for several lines, a name stands in one.
+func (c *Column) longest() int {
+	switch c.Heading {
+	case "Note", "Source", "Value", "Hazard":
+		return 2000
+	}
+	return 250
 }
 
 // lacks tells of a blank cell where one must be filled, unless it is blank because it is merged with others, which was told.

@@ -571,7 +571,7 @@ func (b *book) cell(d *xml.Decoder, e xml.StartElement) (entry, error) {
 	switch {
 	case err != nil:
 		return c, fmt.Errorf("the cell %s %w", attr(e, "r"), err)
-	case len(c.text) > 4*mostText:
+	case tooLong(c.text, mostText):
 		return c, fmt.Errorf("the cell %s holds more than %d characters", attr(e, "r"), mostText)
 	}
 	return c, nil
@@ -615,7 +615,7 @@ func (b *book) meaning(in stored, style string) (entry, error) {
 	switch {
 	case c.text == "":
 		return entry{}, nil
-	case c.kind == text && brokenWords[c.text]:
+	case c.kind == text && failed(c.text):
 		c.kind = broken
 	}
 	return c, nil
