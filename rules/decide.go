@@ -250,7 +250,7 @@ func (v *view) candidates(s scope, q question) []candidate {
 		add(p, v.c.spots[i].Surface && s.surfaceOnly)
 	}
 	inner := len(cs)
-	for _, p := range v.edges(s, q) {
+	for _, p := range v.edges(s, q, cs) {
 		add(p, s.surfaceOnly)
 	}
 	for i := inner; i < len(cs); i++ {

@@ -27,6 +27,7 @@ type edge struct {
 	level   float64 // the peak at the edge, °C
 	t       tilt
 	w       window
+	lo, hi  int     // between which instants of the scan the two have their peaks, and some more
 	first   outcome // of the scanned courses, blended so that the peak just counts
 }
 
@@ -38,14 +39,11 @@ func (x coordinates) place() model.Place {
 	return model.Place{UpM: x[0], AcrossM: x[1], AlongM: x[2]}
 }
 
-// edges finds places at the edges of those that count for a clock, in each window: along the axes between neighbouring spots.
-func (v *view) edges(s scope, q question) []model.Place {
+// edges finds places at the edges of those that count for a clock, in each window: along the axes between neighbouring spots. The
+// least favourable is moved along its edge. Edges that are plainly more favourable than the worst candidate are left out.
+func (v *view) edges(s scope, q question, cs []candidate) []model.Place {
 	if !v.l.clocked() || v.h.Recorded || len(s.spots) == 0 {
 		return nil
-	}
-	levels := []float64{v.l.crossedC()}
-	if v.errK > 0 { // the unfavourable reading counts more places
-		levels = append(levels, levels[0]-v.errK)
 	}
 	within := make([]bool, len(v.c.spots))
 	for _, i := range s.spots {
@@ -53,34 +51,78 @@ func (v *view) edges(s scope, q question) []model.Place {
 	}
 	var found []model.Place
 	for _, w := range v.windows() {
-		top := make([]float64, len(v.c.spots))
-		for _, i := range s.spots {
-			_, top[i] = path{t: v.c.times, c: v.c.rows[i]}.most(w.interval, 1)
-		}
-		for n, level := range levels {
-			var es []edge
-			t := tilt{rank: true, errK: v.errK * float64(n), edge: n > 0}
-			for _, pair := range v.c.neighbours() {
-				i, k := pair.a, pair.b
-				if top[i] < top[k] {
-					i, k = k, i
+		slid := false
+		for n, level := range []float64{v.l.crossedC(), v.l.crossedC() - v.errK} {
+			if n > 0 && v.errK == 0 {
+				break
+			}
+			t := tilt{rank: true, errK: v.errK * float64(n), edge: n > 0} // the unfavourable reading counts more places
+			var worst coordinates
+			var by edge
+			most := math.Inf(-1)
+			for _, e := range v.paired(within, w, level, t, q, cs) {
+				if x, ok := v.follow(e, e.in); ok {
+					found = append(found, x.place())
+					if bad := q.measure(v.c.path(x.place()), t).bad; bad > most {
+						worst, by, most = x, e, bad
+					}
 				}
-				if within[i] && within[k] && top[i] > level && top[k] <= level {
-					e := edge{in: coordinatesOf(v.c.spots[i].Place), out: coordinatesOf(v.c.spots[k].Place), axis: pair.axis, level: level, t: t, w: w}
-					e.first = q.measure(v.c.blend(i, k, (level-top[k])/(top[i]-top[k]), w, level), t)
-					es = append(es, e)
+				if n > 0 && slid {
+					break
 				}
 			}
-			sort.SliceStable(es, func(a, b int) bool { return worse(es[a].first, es[b].first) })
-			for _, e := range es[:min(len(es), mostEdges)] {
-				if x, ok := v.follow(e, e.in); ok {
-					found = append(found, v.slide(e, x, q, s.surfaceOnly).place())
-				}
+			if !slid && !math.IsInf(most, -1) {
+				found, slid = append(found, v.slide(by, worst, q, s.surfaceOnly).place()), true
 			}
 		}
 	}
 	return found
 }
+
+// paired lists the pairs of neighbours that the edge lies between, the worst by their blended courses first.
+func (v *view) paired(within []bool, w window, level float64, t tilt, q question, cs []candidate) []edge {
+	bar := outcome{verdict: NotApplicable, bad: math.Inf(-1)}
+	for _, c := range cs {
+		if worse(c.nominal, bar) {
+			bar = c.nominal
+		}
+	}
+	bar.bad -= plainly * math.Abs(bar.bad)
+	peak, top := make([]int, len(within)), make([]float64, len(within))
+	first := sort.SearchFloat64s(v.c.times, w.a)
+	last := sort.SearchFloat64s(v.c.times, w.b)
+	for i, row := range v.c.rows {
+		if within[i] {
+			peak[i] = first
+			for n := first; n <= last && n < len(row); n++ {
+				if row[n] > row[peak[i]] {
+					peak[i] = n
+				}
+			}
+			top[i] = row[peak[i]]
+		}
+	}
+	var es []edge
+	for _, pair := range v.c.neighbours() {
+		i, k := pair.a, pair.b
+		if top[i] < top[k] {
+			i, k = k, i
+		}
+		if !(within[i] && within[k] && top[i] > level && top[k] <= level) {
+			continue
+		}
+		e := edge{in: coordinatesOf(v.c.spots[i].Place), out: coordinatesOf(v.c.spots[k].Place), axis: pair.axis, level: level, t: t, w: w,
+			lo: max(first, min(peak[i], peak[k])-2), hi: min(last, max(peak[i], peak[k])+2)}
+		if e.first = q.measure(v.c.blend(i, k, (level-top[k])/(top[i]-top[k]), w, level), t); !worse(bar, e.first) {
+			es = append(es, e)
+		}
+	}
+	sort.SliceStable(es, func(a, b int) bool { return worse(es[a].first, es[b].first) })
+	return es[:min(len(es), mostEdges)]
+}
+
+// plainly is by what share of the value the first look at an edge may err: less favourable than that is worth following.
+const plainly = 0.1
 
 // blend mixes the scanned courses of two spots (share of the first), moved so that the peak in a window just exceeds a level.
 func (c *courses) blend(i, k int, share float64, w window, level float64) path {
@@ -104,12 +146,7 @@ func (v *view) follow(e edge, through coordinates) (x coordinates, ok bool) {
 		through[e.axis] = along
 		return through
 	}
-	over := func(along float64) float64 {
-		p := on(along).place()
-		v.h.Course(p, v.c.times, out)
-		_, top := path{t: v.c.times, c: out, at: func(t float64) float64 { return v.h.At(p, t) }}.most(e.w.interval, 1)
-		return top - e.level - edgeK
-	}
+	over := func(along float64) float64 { return v.peakOf(e, on(along).place(), out) - e.level - edgeK }
 	a, b := e.in[e.axis], e.out[e.axis]
 	fa, fb := over(a), over(b)
 	for n := 0; n < 4 && (fa <= 0 || fb > 0); n++ {
@@ -147,6 +184,25 @@ func (v *view) follow(e edge, through coordinates) (x coordinates, ok bool) {
 	return on(a), true
 }
 
+// peakOf is the highest temperature of a place in the window of an edge, °C: near where its neighbours have theirs, else anywhere.
+func (v *view) peakOf(e edge, at model.Place, scratch []float64) float64 {
+	first, last := sort.SearchFloat64s(v.c.times, e.w.a), sort.SearchFloat64s(v.c.times, e.w.b)
+	for lo, hi := e.lo, e.hi; ; lo, hi = first, last {
+		p := path{t: v.c.times[lo : hi+1], c: scratch[lo : hi+1], at: func(t float64) float64 { return v.h.At(at, t) }}
+		v.h.Course(at, p.t, p.c)
+		top := 0
+		for i := range p.c {
+			if p.c[i] > p.c[top] {
+				top = i
+			}
+		}
+		if (top > 0 || lo == first) && (top < len(p.c)-1 || hi == last) {
+			_, c := p.polish(top, 1)
+			return c
+		}
+	}
+}
+
 // inside is the coordinate within the food that is nearest to one on an axis.
 func (c *courses) inside(axis int, along float64) float64 {
 	marks := c.marks[axis]
@@ -168,7 +224,7 @@ func (v *view) slide(e edge, x coordinates, q question, surfaceOnly bool) coordi
 		n := min(max(sort.SearchFloat64s(marks, x[axis]), 1), last)
 		spacing := marks[n] - marks[n-1]
 		d, best := spacing/2, score(x)
-		for d > spacing/20 {
+		for d > spacing/10 {
 			at, here := x, best
 			try := func(along float64) float64 {
 				y := at
