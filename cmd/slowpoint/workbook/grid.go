@@ -14,6 +14,7 @@ type grid struct {
 	merged  []block
 	hidden  bool         // the whole sheet
 	hiddenC map[int]bool // hidden columns
+	words   []string     // that number formats show behind a number, as 0.0" cm" does
 	csv     bool
 	commas  bool   // CSV whose cells are divided by commas
 	is1904  bool   // its dates count from 1904
@@ -49,8 +50,9 @@ type form uint8
 const (
 	bare form = iota
 	percent
-	clock // duration or time of day, in days
-	date  // in days
+	clock  // duration or time of day, in days
+	date   // in days
+	worded // and above: shows words behind the number, which are in grid.words
 )
 
 // entry is one filled cell.

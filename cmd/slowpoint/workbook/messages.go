@@ -56,6 +56,7 @@ var (
 	unusual        = saying{"is read as {1}, which is unusual: usual is {2}", "check the number and its unit{3}"}
 	isDate         = saying{"is formatted as a date", "type {1}, and give the cell a number format"}
 	isTime         = saying{"is formatted as a time", "type {1}, and give the cell a number format"}
+	isWorded       = saying{"is shown with the unit {1} by its number format, but the heading says {2}", "let both say the same unit"}
 	isPercent      = saying{"is formatted as a percentage", "type {1}, and give the cell a number format"}
 	isTruth        = saying{"is a logical value", "type {1}"}
 	decimalMixed   = saying{"shows a decimal {1}, but {2} shows a decimal {3}", "use one decimal sign throughout, or fill the item Decimal sign of the sheet Plan"}

@@ -675,6 +675,8 @@ func (l *line) convert(heading string, e *entry, c *Column, u *unit.Unit) (unit.
 		l.fault(heading, short(x*100)+" %", isPercent, expected)
 	case strings.Contains(u.Name(), ":"):
 		l.fault(heading, e.text, notClock, u.Name())
+	case e.form >= worded && q.Unit(l.t.grid.words[e.form-worded]) != nil && q.Unit(l.t.grid.words[e.form-worded]) != u:
+		l.fault(heading, shown(e.text, x), isWorded, l.t.grid.words[e.form-worded], u.Name())
 	default:
 		return u.Of(x, shown(e.text, x)), true
 	}

@@ -22,7 +22,8 @@ type book struct {
 	sheets  []bookSheet
 	is1904  bool
 	strings []string
-	forms   []form // of each cell style
+	forms   []form   // of each cell style
+	words   []string // of forms from worded on
 	struck  struck
 }
 
@@ -59,7 +60,7 @@ func readWorkbook(data []byte) ([]*grid, error) {
 		if f == nil {
 			return nil, damaged(s.part, fmt.Errorf("it is missing, and the sheet %s is in it", s.name))
 		}
-		g := &grid{name: tidy(s.name), hidden: s.hidden, hiddenC: map[int]bool{}, is1904: b.is1904}
+		g := &grid{name: tidy(s.name), hidden: s.hidden, hiddenC: map[int]bool{}, words: b.words, is1904: b.is1904}
 		if err := m.part(f, func(r io.Reader) error { return b.sheet(r, g, &cells) }); err != nil {
 			return nil, err
 		}
@@ -299,7 +300,7 @@ func (b *book) readStyles(r io.Reader) error {
 	return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
 		switch e.Name.Local {
 		case "numFmt":
-			custom[attr(e, "numFmtId")] = formOf(attr(e, "formatCode"))
+			custom[attr(e, "numFmtId")] = b.form(attr(e, "formatCode"))
 		case "fonts":
 			inFonts = true
 		case "font":
@@ -346,6 +347,53 @@ func builtIn(id string) form {
 		return date
 	}
 	return bare
+}
+
+// form is formOf, but tells bare formats apart that show words behind the number.
+func (b *book) form(code string) form {
+	f := formOf(code)
+	words := behind(code)
+	if f != bare || words == "" || len(b.words) >= 200 {
+		return f
+	}
+	for i, w := range b.words {
+		if w == words {
+			return worded + form(i)
+		}
+	}
+	b.words = append(b.words, words)
+	return worded + form(len(b.words)-1)
+}
+
+// behind gives the words that the first part of a number format code shows behind the number: cm of 0.0" cm", °C of 0\ °\C.
+func behind(code string) string {
+	var words strings.Builder
+	rs := []rune(code)
+	for i := 0; i < len(rs); i++ {
+		switch c := rs[i]; c {
+		case '"':
+			for i++; i < len(rs) && rs[i] != '"'; i++ {
+				words.WriteRune(rs[i])
+			}
+		case '\\':
+			if i++; i < len(rs) {
+				words.WriteRune(rs[i])
+			}
+		case '_', '*':
+			i++
+		case '[':
+			for i < len(rs) && rs[i] != ']' {
+				i++
+			}
+		case ';':
+			i = len(rs)
+		case '0', '#', '?', '.':
+			words.Reset()
+		case '°', '²', '³', 'µ', '·', '/':
+			words.WriteRune(c)
+		}
+	}
+	return tidy(words.String())
 }
 
 // formOf reads a number format code: what stands in quotes, behind a backslash or in brackets is no part of it, but [h], [m] and [s].
