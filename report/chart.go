@@ -252,6 +252,31 @@ func (f *chart) runs(x, y func(float64) vg.Length, i int, taken *labels) [][]vg.
 	return append(all, run)
 }
 
+// thinned appends a curve without the points that lie less than 0.02 pt off the line between their neighbours: what no printer
+// can show. The ends and every turn stay.
+func thinned(out, run []vg.Point) []vg.Point {
+	if len(run) < 3 {
+		return append(out, run...)
+	}
+	a, b := run[0], run[len(run)-1]
+	long := math.Hypot(float64(b.X-a.X), float64(b.Y-a.Y))
+	far, at := 0.02, 0
+	for i, p := range run[1 : len(run)-1] {
+		off := math.Hypot(float64(p.X-a.X), float64(p.Y-a.Y))
+		if long > 0 {
+			off = math.Abs(float64((b.X-a.X)*(p.Y-a.Y)-(b.Y-a.Y)*(p.X-a.X))) / long
+		}
+		if off > far {
+			far, at = off, i+1
+		}
+	}
+	if at == 0 {
+		return append(out, a, b)
+	}
+	out = thinned(out, run[:at+1])
+	return thinned(out[:len(out)-1], run[at:])
+}
+
 // plotLine draws a curve with marks along it.
 func (f *chart) plotLine(c draw.Canvas, x, y func(float64) vg.Length, i int, runs [][]vg.Point) {
 	l, look := &f.lines[i], looks[i%len(looks)]
@@ -259,7 +284,9 @@ func (f *chart) plotLine(c draw.Canvas, x, y func(float64) vg.Length, i int, run
 	if i == 0 {
 		ls.Width = 1.8
 	}
-	c.StrokeLines(ls, runs...)
+	for _, run := range runs {
+		c.StrokeLines(ls, thinned(nil, run))
+	}
 	const n = 7
 	for k := 0; k < n; k++ {
 		at := f.x0 + (f.x1-f.x0)*(float64(k)+0.35+0.12*float64(i))/n

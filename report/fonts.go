@@ -39,9 +39,41 @@ var faces = sync.OnceValue(func() *typefaces {
 		widths(&t.width[i], f)
 		all = append(all, font.Face{Font: chartFont(0, i == 1), Face: f})
 	}
-	t.measure = text.Plain{Fonts: font.NewCache(all)}
+	t.measure = &measure{Plain: text.Plain{Fonts: font.NewCache(all)}, known: map[boxed]box3{}}
 	return t
 })
+
+// measure keeps the sizes of words, for the charts of a plan have nearly the same ones.
+type measure struct {
+	text.Plain
+	lock  sync.Mutex
+	known map[boxed]box3
+}
+
+type boxed struct {
+	words string
+	font  font.Font
+}
+
+// box3 is a width, a height and a depth.
+type box3 [3]font.Length
+
+// Box is the size of one line.
+func (m *measure) Box(words string, f font.Font) (width, height, depth font.Length) {
+	m.lock.Lock()
+	b, ok := m.known[boxed{words, f}]
+	m.lock.Unlock()
+	if !ok {
+		b[0], b[1], b[2] = m.Plain.Box(words, f)
+		m.lock.Lock()
+		if len(m.known) > 5000 { // of plans without end
+			clear(m.known)
+		}
+		m.known[boxed{words, f}] = b
+		m.lock.Unlock()
+	}
+	return b[0], b[1], b[2]
+}
 
 // widths fills the table of one font.
 func widths(table *[65536]int16, f *sfnt.Font) {

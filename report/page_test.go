@@ -7,6 +7,8 @@ import (
 	"strings"
 	"testing"
 
+	"gonum.org/v1/plot/vg"
+
 	"slowpoint/model"
 	"slowpoint/rules"
 )
@@ -244,5 +246,33 @@ func TestFontAfterUprightWords(t *testing.T) {
 	}
 	if len(fonts) != 3 || fonts[1] != fonts[2] || fonts[0] == fonts[1] {
 		t.Errorf("the fonts of heading, upright and level words: %q", fonts)
+	}
+}
+
+// A curve keeps its ends, its turns and everything that a printer could show; a straight piece keeps its ends alone.
+func TestThinned(t *testing.T) {
+	var straight, wave []vg.Point
+	for i := range 901 {
+		x := vg.Length(i) / 2
+		straight = append(straight, vg.Point{X: x, Y: 3 - 2*x})
+		wave = append(wave, vg.Point{X: x, Y: 80 * vg.Length(math.Sin(float64(x)/40))})
+	}
+	wave[500].Y += 0.5 // a spike that was measured
+	if got := thinned(nil, straight); len(got) != 2 || got[0] != straight[0] || got[1] != straight[900] {
+		t.Errorf("a straight line keeps %d points", len(got))
+	}
+	got := thinned(nil, wave)
+	if len(got) > 300 || !slices.Contains(got, wave[0]) || !slices.Contains(got, wave[500]) || !slices.Contains(got, wave[900]) {
+		t.Errorf("a wave keeps %d points", len(got))
+	}
+	k := 0
+	for _, p := range wave { // the height of the line drawn, at each point
+		for k < len(got)-2 && got[k+1].X < p.X {
+			k++
+		}
+		a, b := got[k], got[k+1]
+		if off := math.Abs(float64(a.Y + (b.Y-a.Y)*(p.X-a.X)/(b.X-a.X) - p.Y)); off > 0.06 { // 0.02 pt across a slope of up to 2
+			t.Errorf("at %g the line is off by %g pt", p.X, off)
+		}
 	}
 }
