@@ -36,6 +36,6 @@ func (r *runner) calculate(p *workbook.Product) (*report.Product, error) {
 	}
 	out.Readings = p.Readings()
 	out.Samples = out.History.Sample(r.head.EveryS)
-	out.Lever = r.lever(p, out.Judgement.Verdict)
+	out.Lever = r.lever(p, out)
 	return out, nil
 }

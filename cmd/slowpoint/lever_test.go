@@ -2,64 +2,215 @@ package main
 
 import (
 	"fmt"
+	"regexp"
+	"slices"
 	"strings"
 	"testing"
 
 	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model"
 	"slowpoint/report"
 	"slowpoint/rules"
 )
 
-// The size that the page of the operator names meets every limit, and a millimetre more does not; a product that meets its limits
-// has no lever.
-func TestLever(t *testing.T) {
+// demoRunner gives the demo's plan with its runner, and a product of it by name.
+func demoRunner(t *testing.T, name string) (*runner, workbook.Product) {
+	t.Helper()
 	plan, err := workbook.ReadDemo()
 	if err != nil {
 		t.Fatal(err)
 	}
 	r := &runner{plan: plan, head: &report.Head{EveryS: 60}, options: &checkOptions{}}
+	for i := range plan.Products {
+		if plan.Products[i].Name == name {
+			p := plan.Products[i]
+			p.Steps = slices.Clone(p.Steps)
+			return r, p
+		}
+	}
+	t.Fatalf("the demo has no %s", name)
+	return nil, workbook.Product{}
+}
+
+func (r *runner) mustJudge(t *testing.T, p workbook.Product) *report.Product {
+	t.Helper()
+	d, err := r.judged(&p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return d
+}
+
+// The size that the page of the operator names meets every limit, and one step more does not; a product that meets its limits has no
+// lever, and neither has one of a large plan.
+func TestLever(t *testing.T) {
 	for _, c := range []struct {
 		name   string
 		larger float64 // of the demo's size
-	}{{"Turkey roll", 1.9}, {"Potato bake, full tray", 2.2}, {"Liver terrine", 2.1}} {
-		t.Run(c.name, func(t *testing.T) {
-			var p workbook.Product
-			for i := range plan.Products {
-				if plan.Products[i].Name == c.name {
-					p = plan.Products[i]
-				}
-			}
+		inches bool
+	}{{"Turkey roll", 1.9, false}, {"Potato bake, full tray", 2.2, false}, {"Liver terrine", 2.1, false}, {"Turkey roll", 1.9, true}} {
+		t.Run(fmt.Sprintf("%s, inches %v", c.name, c.inches), func(t *testing.T) {
+			r, p := demoRunner(t, c.name)
 			z := &p.Size
 			for _, size := range []*float64{&z.ThicknessM, &z.WidthM, &z.LengthM, &z.DiameterM} {
 				*size *= c.larger
 			}
+			p.Inches = c.inches
+			unit, step, symbol := 0.001, 1.0, "mm"
+			if c.inches {
+				unit, step, symbol = 0.0254, 0.05, "in"
+			}
 			word, size := governing(&p.Product)
-			verdict := func(mm float64) rules.Verdict {
+			verdict := func(x float64) rules.Verdict {
 				q := p
 				q.Points = nil
 				_, z := governing(&q.Product)
-				*z = mm / 1000
-				d, err := r.judged(&q)
-				if err != nil {
-					t.Fatal(err)
-				}
-				return d.Judgement.Verdict
+				*z = x * unit
+				return r.mustJudge(t, q).Judgement.Verdict
 			}
-			now := *size * 1000
-			if v := verdict(now); v != rules.NotMet {
-				t.Fatalf("%g mm is %s: the case needs one that is not met", now, v)
+			if v := verdict(*size / unit); v != rules.NotMet {
+				t.Fatalf("%g m is %s: the case needs one that is not met", *size, v)
 			}
-			said := r.lever(&p, rules.NotMet)
+			said := r.lever(&p, r.mustJudge(t, p))
 			var from, to float64
-			if _, err := fmt.Sscanf(strings.ToLower(said), word+" %g mm → %g mm would meet", &from, &to); err != nil {
+			at := strings.Index(said, word+" ")
+			if at < 0 {
+				t.Fatalf("%q names no %s", said, word)
+			}
+			if _, err := fmt.Sscanf(said[at:], word+" %g "+symbol+" → %g "+symbol, &from, &to); err != nil || !strings.Contains(said, "every limit in the model") {
 				t.Fatalf("%q: %v", said, err)
 			}
-			if verdict(to) != rules.Met || verdict(to+1) == rules.Met {
-				t.Errorf("%q: %g mm is %s, %g mm is %s", said, to, verdict(to), to+1, verdict(to+1))
+			if verdict(to) != rules.Met || verdict(to+step) == rules.Met {
+				t.Errorf("%q: %g is %s, %g is %s", said, to, verdict(to), to+step, verdict(to+step))
 			}
-			if said := r.lever(&p, rules.Met); said != "" {
-				t.Errorf("a product that meets its limits has the lever %q", said)
+			if c.inches && !strings.Contains(said, " mm)") {
+				t.Errorf("%q lacks the mm", said)
+			}
+			if _, met := demoRunner(t, c.name); r.lever(&met, r.mustJudge(t, met)) != "" {
+				t.Error("a product that meets its limits has a lever")
+			}
+			now := r.mustJudge(t, p)
+			r.plan.Products = make([]workbook.Product, leverPlans+1)
+			if said := r.lever(&p, now); said != "" {
+				t.Errorf("a plan of %d products: %q", leverPlans+1, said)
 			}
 		})
+	}
+}
+
+// A longer heating, one that ends warmer, and a colder chilling are found to the minute and the degree, on the safe side: what is named
+// meets the limits, a step less does not, and nothing of it is applied.
+func TestLeverOfStepsAndMedia(t *testing.T) {
+	for _, c := range []struct {
+		name, product string
+		fahrenheit    bool
+		step          int                                // of the chain
+		spoil         func(s *model.Step)                // makes it miss a limit
+		words         string                             // with the number named
+		set           func(s *model.Step, named float64) // puts the named number in
+		less          float64                            // a step to the less favourable side
+	}{
+		{"longer boil", "Potato dumplings", false, 0, func(s *model.Step) { s.UntilC, s.DurationS = nil, 6*60 }, `boil 6 min → ([\d.]+) min`,
+			func(s *model.Step, n float64) { s.DurationS = n * 60 }, -1},
+		{"boil of half minutes", "Potato dumplings", false, 0, func(s *model.Step) { s.UntilC, s.DurationS = nil, 6.5*60 }, `boil 6.5 min → ([\d.]+) min`,
+			func(s *model.Step, n float64) { s.DurationS = n * 60 }, -1},
+		{"warmer end", "Turkey roll", false, 0, func(s *model.Step) { c := 57.5; s.UntilC = &c }, `simmer until 57.5 °C → ([\d.]+) °C \([\d.]+ °F\)`,
+			func(s *model.Step, n float64) { s.UntilC = &n }, -1},
+		{"warmer end in °F", "Turkey roll", true, 0, func(s *model.Step) { c := 57.5; s.UntilC = &c }, `simmer until 135.5 °F → ([\d.]+) °F \([\d.]+ °C\)`,
+			func(s *model.Step, n float64) { c := (n - 32) / 1.8; s.UntilC = &c }, -1},
+		{"colder bath", "Liver terrine", false, 2, func(s *model.Step) { s.Medium.C = []float64{14.3}; s.UntilC = nil; s.DurationS = 10 * 3600 }, `ice bath in 14.3 °C → ([\d.]+) °C \(`,
+			func(s *model.Step, n float64) {
+				s.Medium.C = []float64{n}
+				for k := range s.Faces {
+					s.Faces[k].Medium.C = []float64{n}
+				}
+			}, 1},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			r, p := demoRunner(t, c.product)
+			r.head.Fahrenheit = c.fahrenheit
+			s := &p.Steps[c.step]
+			s.Faces = slices.Clone(s.Faces)
+			c.spoil(s)
+			for k := range s.Faces {
+				s.Faces[k].Medium = s.Medium
+			}
+			now := r.mustJudge(t, p)
+			if now.Judgement.Verdict != rules.NotMet {
+				t.Fatalf("%s: the case needs one that is not met", now.Judgement.Verdict)
+			}
+			before := fmt.Sprintf("%+v", p.Steps)
+			said := r.lever(&p, now)
+			m := regexp.MustCompile(c.words).FindStringSubmatch(said)
+			if m == nil {
+				t.Fatalf("%q", said)
+			}
+			if !strings.HasPrefix(said, "With everything else unchanged, ") {
+				t.Errorf("%q", said)
+			}
+			if after := fmt.Sprintf("%+v", p.Steps); after != before {
+				t.Errorf("the plan was changed:\n%s\n%s", before, after)
+			}
+			var named float64
+			if _, err := fmt.Sscan(m[1], &named); err != nil {
+				t.Fatal(err)
+			}
+			missed := func(x float64) int {
+				q := p
+				q.Steps = slices.Clone(p.Steps)
+				q.Steps[c.step].Faces = slices.Clone(p.Steps[c.step].Faces)
+				c.set(&q.Steps[c.step], x)
+				n := 0
+				for _, f := range r.mustJudge(t, q).Judgement.Findings {
+					n += map[bool]int{true: 1}[f.Level == "must" && f.Verdict != rules.Met && f.Verdict != rules.NotApplicable]
+				}
+				return n
+			}
+			if a, b := missed(named), missed(named+c.less); a != 0 || b == 0 {
+				t.Errorf("%q: %d limits are missed with it, %d with a step less", said, a, b)
+			}
+		})
+	}
+}
+
+// What was found is said in whole sentences, whole successes first.
+func TestLeverWords(t *testing.T) {
+	for _, c := range []struct {
+		name              string
+		every, some, none []string
+		want              string
+	}{
+		{"one", []string{"a 2 → 1"}, nil, nil, "With everything else unchanged, a 2 → 1 would meet every limit in the model."},
+		{"two", []string{"a", "b"}, nil, []string{"c up to 9"}, "With everything else unchanged, each of these alone would meet every limit in the model: a; b. Not enough alone: c up to 9."},
+		{"a part", nil, []string{"b would meet \"x\", but not every limit"}, nil, "With everything else unchanged, b would meet \"x\", but not every limit."},
+		{"all and a part", []string{"a"}, []string{"b would meet \"x\""}, nil, "With everything else unchanged, a would meet every limit in the model. Alone, b would meet \"x\"."},
+		{"none", nil, nil, []string{"a", "b"}, "With everything else unchanged, nothing that was tried meets the limits in the model: a, b. Look at times, temperatures and air together."},
+		{"nothing tried", nil, nil, nil, ""},
+	} {
+		if got := leverWords(c.every, c.some, c.none); got != c.want {
+			t.Errorf("%s: %q, want %q", c.name, got, c.want)
+		}
+	}
+	if got := quoted([]string{"x", "y", "z"}); got != `"x" and 2 further limits` {
+		t.Error(got)
+	}
+}
+
+// A change that meets its own limits and loses another that was met is no lever.
+func TestLeverKeepsWhatWasMet(t *testing.T) {
+	finding := func(name string, v rules.Verdict) rules.Finding {
+		return rules.Finding{Limit: &rules.Limit{Name: name}, Level: "must", Verdict: v}
+	}
+	product := func(fs ...rules.Finding) *report.Product {
+		return &report.Product{Judgement: rules.Judgement{Findings: fs}}
+	}
+	before := product(finding("heat", rules.NotMet), finding("cool", rules.Met))
+	if !keeps(before, product(finding("heat", rules.Met), finding("cool", rules.Met))) || !keeps(before, product(finding("heat", rules.NotMet), finding("cool", rules.Met))) {
+		t.Error("nothing was lost")
+	}
+	for _, v := range []rules.Verdict{rules.NotMet, rules.CannotTell} {
+		if keeps(before, product(finding("heat", rules.Met), finding("cool", v))) {
+			t.Errorf("the chilling is %s", v)
+		}
 	}
 }
