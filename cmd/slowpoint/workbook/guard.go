@@ -58,7 +58,7 @@ func damaged(part string, err error) error {
 	why := err.Error()
 	var syntax *xml.SyntaxError
 	switch {
-	case errors.Is(err, errTooBig):
+	case errors.Is(err, errTooBig), errors.Is(err, errTooMany):
 		return err
 	case errors.As(err, &syntax):
 		why = syntax.Msg + fmt.Sprintf(", line %d", syntax.Line)
@@ -74,6 +74,8 @@ func damaged(part string, err error) error {
 }
 
 var errTooBig = fmt.Errorf("the workbook unpacks to more than %d MB; a plan is smaller: take out pictures and sheets that do not belong to it, or divide it into several", mostBytes>>20)
+
+var errTooMany = fmt.Errorf("the workbook has more than %d cells, those counted that are formatted and blank; delete the blank rows below the tables of each sheet, or divide the plan", mostCells)
 
 func utf16(s string) []byte {
 	var out []byte

@@ -602,7 +602,7 @@ func (ls *limits) citation(l *line, lim *rules.Limit) map[string]string {
 		switch {
 		case e.kind == figure && e.form == date, e.kind == text && l.t.grid.csv && monthClause.MatchString(e.text):
 			l.remark(cell.Warning, c.heading, *c.field, clauseDate, strings.ToLower(c.heading))
-		case e.kind == figure && (strings.ContainsAny(e.text, ".eE") || e.form != bare):
+		case e.kind == figure && (strings.ContainsAny(e.text, ".eE") || e.form != bare && e.form < worded):
 			l.remark(cell.Warning, c.heading, *c.field, clauseDecimal, strings.ToLower(c.heading))
 		}
 	}

@@ -474,7 +474,7 @@ func (b *book) sheet(r io.Reader, g *grid, left *int) error {
 			}
 			col = n
 			if *left--; *left < 0 {
-				return fmt.Errorf("the plan has more than %d cells; clear the cells that are formatted and blank, or divide the plan", mostCells)
+				return errTooMany
 			}
 			c, err := b.cell(d, e)
 			if err != nil {
