@@ -103,7 +103,7 @@ var (
 	columnNeeded = saying{"{1} is missing: {2} needs it", "{3}"}
 	looseLid     = saying{"Wrap resistance is missing: loose lid needs it", "measure the air gap under the lid: it is about 0.04 m²K/W a millimetre"}
 	// The plastic of the example, 0.2 W/(m·K), is from memory.
-	bareWrap = saying{"Wrap resistance is missing: the tight wrap is taken without a resistance of its own, so that heating and chilling both come out a little too fast, which is not the safe side",
+	bareWrap = saying{"is taken without a Wrap resistance of its own{1}, so that heating and chilling both come out a little too fast, which is not the safe side",
 		"type its thickness over its conductivity, 0.00025 m²K/W for 0.05 mm of a plastic of 0.2 W/(m·K), or a film coefficient that includes it; a wrap with air beneath it is no tight one: take loose lid, about 0.04 m²K/W a millimetre of air"}
 	openWithWrap   = saying{"is given, but the cover is open", "clear the cell, or name the cover"}
 	courseUnknown  = saying{"is not a course of the sheet Courses{1}", "correct the name"}

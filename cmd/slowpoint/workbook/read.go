@@ -68,7 +68,8 @@ type reader struct {
 	shownBy  cell.Ref               // the cell that shows the decimal sign; the zero Ref if the sheet Plan says it
 	formulas map[cell.Ref]*formulas // by sheet and column
 	inOrder  []*formulas
-	offers   int // of names for misspelt ones
+	wraps    formulas // tight wraps without a resistance
+	offers   int      // of names for misspelt ones
 	problems cell.Errors
 
 	height    []echoes // of the item Altitude
@@ -82,7 +83,7 @@ type reader struct {
 	families  map[string][]*product
 }
 
-// formulas counts the cells of a column that hold the stored result of a formula.
+// formulas counts cells of which one thing is told once, such as those of a column that hold the stored result of a formula.
 type formulas struct {
 	first cell.Ref
 	last  cell.Ref
@@ -96,9 +97,16 @@ func (r *reader) formula(at cell.Ref) {
 	k := cell.Ref{Sheet: at.Sheet, Col: at.Col}
 	f := r.formulas[k]
 	if f == nil {
-		f = &formulas{first: at}
+		f = &formulas{}
 		r.formulas[k] = f
 		r.inOrder = append(r.inOrder, f)
+	}
+	f.count(at)
+}
+
+func (f *formulas) count(at cell.Ref) {
+	if f.n == 0 {
+		f.first = at
 	}
 	if f.last != at { // a cell may be read more than once
 		f.n++
@@ -198,6 +206,13 @@ func (r *reader) finish() {
 			s, args = formulasUsed, []string{strconv.Itoa(f.n - 1), strconv.Itoa(f.last.Row)}
 		}
 		r.add(s.problem(f.first, cell.Note, "", "", args...))
+	}
+	if w := &r.wraps; w.n > 0 {
+		more := ""
+		if w.n > 1 {
+			more = ", here and in " + strconv.Itoa(w.n-1) + " more, down to " + w.last.String()
+		}
+		r.add(bareWrap.problem(w.first, cell.Note, "", model.TightWrap.Name, more))
 	}
 	if len(r.products) == 0 && len(r.unread["Products"]) == 0 {
 		r.add(noProducts.problem(cell.Ref{Sheet: r.grids["Products"].name}, cell.Fault, "", ""))

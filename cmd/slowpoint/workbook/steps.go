@@ -5,7 +5,6 @@ import (
 	"strings"
 
 	"slowpoint/model"
-	"slowpoint/model/cell"
 )
 
 // process is the chain of steps that products share.
@@ -317,7 +316,7 @@ func fits(l *line, x *model.Exposure) {
 		l.note("Wrap resistance", "", "0 m²·K/W", "blank: the film coefficient stands for the wrap too")
 	case x.Cover == model.TightWrap && mayWrap && !l.filled("Wrap resistance"):
 		l.note("Wrap resistance", "", "0 m²·K/W", "blank: the tight wrap is taken without a resistance of its own")
-		l.remark(cell.Note, "Wrap resistance", "", bareWrap)
+		l.r.wraps.count(l.at("Cover"))
 	case x.Cover == model.Open && l.filled("Wrap resistance"):
 		l.fault("Wrap resistance", l.entry("Wrap resistance").text, openWithWrap)
 	case x.Cover == nil && x.WrapM2KW == nil && mayWrap && !l.filled("Cover"):
