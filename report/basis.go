@@ -223,17 +223,16 @@ func (x *sheet) readings() {
 	}
 	d.text(say("input note"))
 	var rows [][]string
-	var cells []string
-	rs := x.p.Readings
-	carded := x.carded()
+	var cells []cell.Reading
+	rs, carded := x.p.Readings, x.carded()
 	for i := range rs {
 		row := rs[i].At
 		if row.Col = 0; !carded[row] || !slices.Contains(onCard, rs[i].Column) {
-			cells = append(cells, echoed(&rs[i]))
+			cells = append(cells, rs[i])
 		}
 		if i+1 == len(rs) || rs[i].At.Sheet != rs[i+1].At.Sheet || rs[i].At.Row != rs[i+1].At.Row {
-			rows = append(rows, []string{row.String(), strings.Join(cells, " · ")})
-			cells = nil
+			rows = append(rows, []string{row.String(), echoed(cells)})
+			cells = cells[:0]
 		}
 	}
 	d.table([]col{{title: say("col row"), wide: 30, bold: true}, {title: say("col cells"), wide: frameWide - 30}}, rows, small)
@@ -253,24 +252,39 @@ func (x *sheet) carded() map[cell.Ref]bool {
 	return rows
 }
 
-// echoed is one cell of the input: its letter and column, what was typed, and what was used where that differs.
-func echoed(r *cell.Reading) string {
-	at := ""
-	if r.At.Col > 0 {
-		at = cell.ColumnName(r.At.Col) + " "
+// echoed are the cells of a row of the input: letter and column, what was typed, and what was used where that differs. Blank cells
+// side by side with one default are told together.
+func echoed(rs []cell.Reading) string {
+	var out []string
+	blanks, before := "", ""
+	for i := range rs {
+		r := &rs[i]
+		name := r.Column
+		if r.At.Col > 0 {
+			name = cell.ColumnName(r.At.Col) + " " + name
+		}
+		why := r.Why
+		if strings.HasPrefix(why, "blank:") { // says the same as "(blank)" and the arrow
+			why = ""
+		}
+		used := joined(r.Used, why)
+		if r.Typed == "" && blanks != "" && used == before {
+			blanks += ", " + name
+			out[len(out)-1] = say("echo default", blanks, used)
+			continue
+		}
+		blanks, before = "", used
+		switch {
+		case r.Typed == "":
+			blanks = name
+			out = append(out, say("echo default", name, used))
+		case used == r.Typed:
+			out = append(out, say("echo same", name, r.Typed))
+		default:
+			out = append(out, say("echo", name, r.Typed, used))
+		}
 	}
-	why := r.Why
-	if strings.HasPrefix(why, "blank:") { // says the same as "(blank)" and the arrow
-		why = ""
-	}
-	switch used := joined(r.Used, why); {
-	case r.Typed == "":
-		return say("echo default", at, r.Column, used)
-	case used == r.Typed:
-		return say("echo same", at, r.Column, r.Typed)
-	default:
-		return say("echo", at, r.Column, r.Typed, used)
-	}
+	return strings.Join(out, " · ")
 }
 
 // changeKeys are the reasons to look again, under "change " in words.

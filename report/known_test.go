@@ -136,9 +136,16 @@ func TestEcho(t *testing.T) {
 		{"blank with a reason", cell.Reading{At: at(2, 5), Column: "Temperature is", Used: "set-point", Why: "the less favourable word"}, "E Temperature is: (blank) → set-point; the less favourable word"},
 		{"no column", cell.Reading{At: at(2, 0), Column: "Note", Typed: "x", Used: "x"}, "Note: x"},
 	} {
-		if got := echoed(&c.r); got != c.want {
+		if got := echoed([]cell.Reading{c.r}); got != c.want {
 			t.Errorf("%s: %q, want %q", c.name, got, c.want)
 		}
+	}
+	blank := func(col int, column, used string) cell.Reading {
+		return cell.Reading{At: at(2, col), Column: column, Used: used, Why: "blank: the usual"}
+	}
+	if got, want := echoed([]cell.Reading{blank(12, "Compare", "usual"), blank(13, "Compare time", "usual"), blank(14, "Level", "must"), {At: at(2, 15), Column: "z", Typed: "7 K", Used: "7 K"},
+		blank(16, "Zone", "must")}), "L Compare, M Compare time: (blank) → usual · N Level: (blank) → must · O z: 7 K · P Zone: (blank) → must"; got != want {
+		t.Errorf("%q, want %q", got, want)
 	}
 	h, p := roastHead(), roast(t, model.Slab, rules.Met)
 	for i, row := range []int{2, 5} { // the limit of row 5 does not apply and has no card
