@@ -72,8 +72,8 @@ func (d *doc) summary(rows []Row) {
 	if len(cells) == 0 {
 		d.text(say("summary none"))
 	} else {
-		d.table([]col{{title: say("col product"), wide: 50}, {title: say("col process"), wide: 31}, {title: say("col verdict"), wide: 29, bold: true},
-			{title: say("col margin"), wide: 41}, {title: say("col deciding"), wide: 29}}, cells, small)
+		d.table([]col{{title: say("col product"), wide: 45}, {title: say("col process"), wide: 25}, {title: say("col verdict"), wide: 29, bold: true},
+			{title: say("col margin"), wide: 46}, {title: say("col deciding"), wide: 35}}, cells, small)
 	}
 	d.plan()
 	d.noted()
@@ -123,7 +123,7 @@ func (d *doc) plan() {
 // noted lists everything that was noted about the input, at most 200 lines.
 func (d *doc) noted() {
 	h := d.head
-	d.heading(say("summary problems"), 1, 20)
+	d.heading(say("summary problems"), 1, 20+20*btof(len(h.Problems) > 0)) // with the first row
 	if len(d.unseen) > 0 {
 		d.text(say("summary unseen", d.unseen.list()))
 	}

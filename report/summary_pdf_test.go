@@ -160,6 +160,24 @@ func TestCautionTextIsInSafety(t *testing.T) {
 	}
 }
 
+// The title of the notes stands with the first of them, wherever the page ends.
+func TestNotesStayWithTheirTitle(t *testing.T) {
+	for n := 1; n < 40; n++ {
+		h := roastHead()
+		h.Problems[0].Msg = strings.Repeat("a long remark ", 20)
+		pages, _, _ := pageBoxes(t, summaryPDF(t, h, manyRows(n)))
+		for i, boxes := range pages {
+			words := ""
+			for _, b := range boxes {
+				words += b.word + " "
+			}
+			if strings.Contains(words, say("summary problems")) && !strings.Contains(words, "a long remark") {
+				t.Fatalf("%d products, page %d: the title stands alone", n, i+1)
+			}
+		}
+	}
+}
+
 // One of a kind is not several.
 func TestOneIsNotSeveral(t *testing.T) {
 	h := roastHead()
