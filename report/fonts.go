@@ -243,19 +243,26 @@ func capped(s string, width, size float64, lines int) string {
 // unseen collects characters that the font cannot show.
 type unseen map[rune]bool
 
-// clean makes any text printable: composed (NFC), without control characters, and with U+FFFD for what the font lacks.
-func (u unseen) clean(s string) string {
-	plain := true
-	for i := 0; i < len(s); i++ {
-		if s[i] < ' ' || s[i] > '~' {
-			plain = false
-			break
+// printable tells of most texts that clean has nothing to do: of those in ASCII, in Latin letters below U+0300, where no character
+// joins the one before it, and in dashes, quotes and signs of comparison.
+func (t *typefaces) printable(s string) bool {
+	for _, r := range s {
+		switch {
+		case r >= ' ' && r <= '~':
+		case (r > 0xa0 && r < 0x300 && r != 0xad || r >= 0x2010 && r <= 0x2026 || r == '≤' || r == '≥' || r == '−') && t.width[0][r] >= 0 && t.width[1][r] >= 0:
+		default:
+			return false
 		}
 	}
-	if plain {
+	return true
+}
+
+// clean makes any text printable: composed (NFC), without control characters, and with U+FFFD for what the font lacks.
+func (u unseen) clean(s string) string {
+	w := faces()
+	if w.printable(s) {
 		return s
 	}
-	w := faces()
 	var b strings.Builder
 	for _, r := range norm.NFC.String(strings.ToValidUTF8(s, "\uFFFD")) {
 		switch {
