@@ -194,9 +194,12 @@ func (v *view) cappedFrom(p path, c float64) path {
 	if i >= len(p.t) {
 		return p
 	}
-	q := path{t: append(append([]float64(nil), p.t[:i+1]...), p.t[i:]...)}
-	q.c = append(append([]float64(nil), p.c[:i+1]...), p.c[i:]...)
-	for k := i + 1; k < len(q.c); k++ {
+	if p.t[i] == from { // there it is exact yet: a jump
+		i++
+	}
+	q := path{t: append(append([]float64(nil), p.t[:i]...), p.t[max(i-1, 0):]...)}
+	q.c = append(append([]float64(nil), p.c[:i]...), p.c[max(i-1, 0):]...)
+	for k := i; k < len(q.c); k++ {
 		q.c[k] = math.Min(q.c[k], c)
 	}
 	if p.at != nil {

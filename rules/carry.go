@@ -32,6 +32,7 @@ func (v *view) carryOver(f *Finding) {
 		return
 	}
 	w := newView(&hot, v.c)
+	w.brief = true
 	g := l.Kind.judge(w)
 	if g.Verdict == Met || g.Place == nil {
 		return
@@ -51,7 +52,7 @@ func (f *Finding) carriedOver(says string) {
 // rose says what the slowest place had at the end of a heating, and the highest that it came to before the next one. Of several
 // heatings it is the one after which the place became warmest.
 func (v *view) rose(hot *view, g *Finding) string {
-	p := v.c.path(*g.Place)
+	p := v.c.path(*g.Place, interval{0, v.c.end})
 	left, rose, from := math.NaN(), math.Inf(-1), interval{}
 	for i, iv := range hot.stages {
 		after := interval{iv.b, v.c.end}

@@ -20,8 +20,9 @@ type interval struct{ a, b float64 }
 // path is the course of one place: temperatures c (°C) at rising times t (s; two equal ones are a jump). Between two knots it
 // is straight; with at given, it is at(t), and the knots are close enough for it to be nearly straight.
 type path struct {
-	t, c []float64
-	at   func(t float64) float64
+	t, c  []float64
+	at    func(t float64) float64
+	nodes func(from, to float64) [5]float64 // at at the five nodes of Gauss between two instants; nil: ask at
 }
 
 // in is the part of a path within an interval whose ends are knots.
@@ -32,7 +33,7 @@ func (p path) in(iv interval) path {
 	if last < first {
 		last = first
 	}
-	return path{p.t[first : last+1], p.c[first : last+1], p.at}
+	return path{p.t[first : last+1], p.c[first : last+1], p.at, p.nodes}
 }
 
 // value is the temperature at t; at a jump the one before it.
@@ -330,7 +331,6 @@ func refine(t, c []float64, course func(t, out []float64), at func(float64) floa
 			open = append(open, stretch{t[i], t[i+1], c[i], c[i+1]})
 		}
 	}
-	newT, newC := append([]float64(nil), t...), append([]float64(nil), c...)
 	for depth := 0; len(open) > 0 && depth < 14; depth++ {
 		mid, out := make([]float64, len(open)), make([]float64, len(open))
 		for i, s := range open {
@@ -343,38 +343,53 @@ func refine(t, c []float64, course func(t, out []float64), at func(float64) floa
 				next = append(next, stretch{s.a, mid[i], s.ca, out[i]}, stretch{mid[i], s.b, out[i], s.cb})
 			}
 		}
-		newT, newC = append(newT, mid...), append(newC, out...)
+		t, c = merge(t, c, mid, out)
 		open = next
 	}
-	sort.Sort(byTime{newT, newC})
-	return path{newT, newC, at}
+	return path{t: t, c: c, at: at}
 }
 
-// byTime sorts knots.
-type byTime struct{ t, c []float64 }
+// merge joins two lists of knots whose times rise.
+func merge(t, c, moreT, moreC []float64) (allT, allC []float64) {
+	n := len(t) + len(moreT)
+	allT, allC = make([]float64, 0, n), make([]float64, 0, n)
+	for i, k := 0, 0; len(allT) < n; {
+		if k == len(moreT) || i < len(t) && t[i] <= moreT[k] {
+			allT, allC = append(allT, t[i]), append(allC, c[i])
+			i++
+		} else {
+			allT, allC = append(allT, moreT[k]), append(allC, moreC[k])
+			k++
+		}
+	}
+	return allT, allC
+}
 
-func (k byTime) Len() int           { return len(k.t) }
-func (k byTime) Less(i, j int) bool { return k.t[i] < k.t[j] }
-func (k byTime) Swap(i, j int)      { k.t[i], k.t[j] = k.t[j], k.t[i]; k.c[i], k.c[j] = k.c[j], k.c[i] }
-
-// thin picks the knots of a straight-line course that keep it within tol (K) of itself: the first look of a local search.
-func thin(t, c []float64, tol float64) []int {
+// thin picks the knots of straight-line courses that share their instants and keeps each of them within tol (K) of itself.
+func thin(t []float64, courses [][]float64, tol float64) []int {
 	keep := []int{0}
+	lo, hi := make([]float64, len(courses)), make([]float64, len(courses))
 	for i := 0; i < len(t)-1; {
-		// the longest stretch from i whose knots all lie within tol of its chord, by a cone of slopes
-		lo, hi, j := math.Inf(-1), math.Inf(1), i+1
+		// the longest stretch from i whose knots all lie within tol of its chord, by a cone of slopes for each course
+		for n := range courses {
+			lo[n], hi[n] = math.Inf(-1), math.Inf(1)
+		}
 		last := i + 1
-		for ; j < len(t); j++ {
+	stretch:
+		for j := i + 1; j < len(t); j++ {
 			dt := t[j] - t[i]
 			if dt <= 0 {
 				break
 			}
-			s := (c[j] - c[i]) / dt
-			if s < lo || s > hi {
-				break
+			for n, c := range courses {
+				if s := (c[j] - c[i]) / dt; s < lo[n] || s > hi[n] {
+					break stretch
+				}
 			}
 			last = j
-			lo, hi = math.Max(lo, (c[j]-tol-c[i])/dt), math.Min(hi, (c[j]+tol-c[i])/dt)
+			for n, c := range courses {
+				lo[n], hi[n] = max(lo[n], (c[j]-tol-c[i])/dt), min(hi[n], (c[j]+tol-c[i])/dt)
+			}
 		}
 		keep = append(keep, last)
 		i = last

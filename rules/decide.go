@@ -109,6 +109,9 @@ func (v *view) judgePlaces(q question) Finding {
 	} else {
 		f.PlaceName = s.name
 	}
+	if v.brief && f.Verdict != Met {
+		return f
+	}
 	if f.Verdict != NotApplicable {
 		least, at := v.room(s, q, cs)
 		f.MarginK = finite(least)
@@ -189,7 +192,7 @@ func (v *view) neverWarm(s scope) string {
 	case s.medium != nil:
 		take(*s.medium)
 	case s.one != nil:
-		take(v.c.path(*s.one))
+		take(v.path(*s.one))
 	}
 	for _, i := range s.spots {
 		take(path{t: v.c.times, c: v.c.rows[i]})
@@ -206,7 +209,7 @@ func (v *view) candidates(s scope, q question) []candidate {
 	case s.medium != nil:
 		return []candidate{{path: *s.medium, nominal: q.measure(*s.medium, tilt{})}}
 	case s.one != nil:
-		p := v.c.path(*s.one)
+		p := v.path(*s.one)
 		return []candidate{{place: *s.one, path: p, nominal: q.measure(p, tilt{})}}
 	}
 	picks := v.pick(s.spots, q, tilt{})
@@ -223,7 +226,7 @@ func (v *view) candidates(s scope, q question) []candidate {
 				return
 			}
 		}
-		path := v.c.path(p)
+		path := v.path(p)
 		cs = append(cs, candidate{place: p, surface: surface, path: path, nominal: q.measure(path, tilt{})})
 	}
 	for n, i := range picks {
@@ -231,7 +234,7 @@ func (v *view) candidates(s scope, q question) []candidate {
 		if v.h.Recorded || n > 0 {
 			continue
 		}
-		times := v.c.lightTimes(i)
+		times := v.c.lightTimes(i, v.reach())
 		out := make([]float64, len(times))
 		offset := math.NaN() // so that the search sees the slope among places that never come to the level
 		p, _ := v.h.Least(v.c.spots[i], s.surfaceOnly, func(p model.Place) float64 {
@@ -265,7 +268,8 @@ func (l *Limit) clocked() bool { return l.Clock.Crossing || l.Clock.AtC != nil }
 // pick ranks spots by their scanned courses and returns the worst, and the second worst where its verdict differs.
 func (v *view) pick(spots []int, q question, t tilt) []int {
 	t.rank = true
-	if v.c.roughly(); v.c.rough != nil && len(spots) >= manySpots {
+	// a clock that starts at a peak only just high enough turns on hundredths of a kelvin
+	if v.c.roughly(); v.c.rough != nil && len(spots) >= manySpots && !v.l.clocked() {
 		spots = v.shortlist(spots, q, t)
 	}
 	best, second := -1, -1
@@ -335,10 +339,17 @@ func (v *view) room(s scope, q question, cs []candidate) (float64, *model.Place)
 			least = math.Min(least, r)
 		}
 	}
+	// how much room a candidate has, where that is less than most: +Inf elsewhere
+	below := func(i int, most float64) float64 {
+		if p := cs[i].path; q.room == nil && !math.IsInf(most, 1) && math.IsInf(roomBy(q.measure, path{t: p.t, c: p.c}, most), 1) {
+			return math.Inf(1)
+		}
+		return margin(cs[i].path, math.Inf(1))
+	}
 	var where *model.Place
 	for i := range cs {
 		before := least
-		if take(margin(cs[i].path, math.Inf(1))); least < before-0.002 {
+		if take(below(i, least)); least < before-0.002 {
 			where = &cs[i].place
 		}
 	}
@@ -354,10 +365,10 @@ func (v *view) room(s scope, q question, cs []candidate) (float64, *model.Place)
 		}
 	}
 	if at >= 0 && !v.h.Recorded { // a spot that is not among the candidates decides: its exact course
-		if r := margin(v.c.path(v.c.spots[at].Place), math.Inf(1)); !math.IsNaN(r) {
+		if r := margin(v.path(v.c.spots[at].Place), math.Inf(1)); !math.IsNaN(r) {
 			least, where = r, &v.c.spots[at].Place
 			for i := range cs {
-				if r := margin(cs[i].path, math.Inf(1)); r < least {
+				if r := below(i, least); r < least {
 					least, where = r, &cs[i].place
 				}
 			}
@@ -418,6 +429,7 @@ func roomBy(m measure, p path, least float64) float64 {
 
 // worstAt is the worst outcome over the candidates for a given tilt.
 func worstAt(q question, cs []candidate, t tilt) outcome {
+	t.rank = true
 	o := q.measure(cs[0].path, t)
 	for _, c := range cs[1:] {
 		if p := q.measure(c.path, t); worse(p, o) {

@@ -51,6 +51,7 @@ func (v *view) edges(s scope, q question, cs []candidate) []model.Place {
 	}
 	var found []model.Place
 	for _, w := range v.windows() {
+		pk := v.peaks(s.spots, w)
 		slid := false
 		for n, level := range []float64{v.l.crossedC(), v.l.crossedC() - v.errK} {
 			if n > 0 && v.errK == 0 {
@@ -60,10 +61,10 @@ func (v *view) edges(s scope, q question, cs []candidate) []model.Place {
 			var worst coordinates
 			var by edge
 			most := math.Inf(-1)
-			for _, e := range v.paired(within, w, level, t, q, cs) {
+			for _, e := range v.paired(pk, within, w, level, t, q, cs) {
 				if x, ok := v.follow(e, e.in); ok {
 					found = append(found, x.place())
-					if bad := q.measure(v.c.path(x.place()), t).bad; bad > most {
+					if bad := q.measure(v.path(x.place()), t).bad; bad > most {
 						worst, by, most = x, e, bad
 					}
 				}
@@ -79,8 +80,36 @@ func (v *view) edges(s scope, q question, cs []candidate) []model.Place {
 	return found
 }
 
+// peaks are the highest temperatures of the scanned courses in a window.
+type peaks struct {
+	at          []int     // instant of the scan, by spot
+	c           []float64 // °C, by spot
+	least, most float64   // of c
+	first, last int       // instants of the window
+}
+
+// peaks of the spots of a limit.
+func (v *view) peaks(spots []int, w window) peaks {
+	pk := peaks{at: make([]int, len(v.c.rows)), c: make([]float64, len(v.c.rows)), least: math.Inf(1), most: math.Inf(-1),
+		first: sort.SearchFloat64s(v.c.times, w.a), last: sort.SearchFloat64s(v.c.times, w.b)}
+	for _, i := range spots {
+		at, top := pk.first, math.Inf(-1)
+		for n, c := range v.c.rows[i][pk.first : pk.last+1] {
+			if c > top {
+				at, top = pk.first+n, c
+			}
+		}
+		pk.at[i], pk.c[i] = at, top
+		pk.least, pk.most = math.Min(pk.least, top), math.Max(pk.most, top)
+	}
+	return pk
+}
+
 // paired lists the pairs of neighbours that the edge lies between, the worst by their blended courses first.
-func (v *view) paired(within []bool, w window, level float64, t tilt, q question, cs []candidate) []edge {
+func (v *view) paired(pk peaks, within []bool, w window, level float64, t tilt, q question, cs []candidate) []edge {
+	if pk.least > level || pk.most <= level {
+		return nil
+	}
 	bar := outcome{verdict: NotApplicable, bad: math.Inf(-1)}
 	for _, c := range cs {
 		if worse(c.nominal, bar) {
@@ -88,20 +117,7 @@ func (v *view) paired(within []bool, w window, level float64, t tilt, q question
 		}
 	}
 	bar.bad -= plainly * math.Abs(bar.bad)
-	peak, top := make([]int, len(within)), make([]float64, len(within))
-	first := sort.SearchFloat64s(v.c.times, w.a)
-	last := sort.SearchFloat64s(v.c.times, w.b)
-	for i, row := range v.c.rows {
-		if within[i] {
-			peak[i] = first
-			for n := first; n <= last && n < len(row); n++ {
-				if row[n] > row[peak[i]] {
-					peak[i] = n
-				}
-			}
-			top[i] = row[peak[i]]
-		}
-	}
+	peak, top := pk.at, pk.c
 	var es []edge
 	for _, pair := range v.c.neighbours() {
 		i, k := pair.a, pair.b
@@ -112,7 +128,7 @@ func (v *view) paired(within []bool, w window, level float64, t tilt, q question
 			continue
 		}
 		e := edge{in: coordinatesOf(v.c.spots[i].Place), out: coordinatesOf(v.c.spots[k].Place), axis: pair.axis, level: level, t: t, w: w,
-			lo: max(first, min(peak[i], peak[k])-2), hi: min(last, max(peak[i], peak[k])+2)}
+			lo: max(pk.first, min(peak[i], peak[k])-2), hi: min(pk.last, max(peak[i], peak[k])+2)}
 		if e.first = q.measure(v.c.blend(i, k, (level-top[k])/(top[i]-top[k]), w, level), t); !worse(bar, e.first) {
 			es = append(es, e)
 		}
@@ -215,7 +231,7 @@ func (v *view) slide(e edge, x coordinates, q question, surfaceOnly bool) coordi
 	if n := len(v.c.marks[0]) * len(v.c.marks[1]) * len(v.c.marks[2]); n != len(v.c.spots) {
 		return x // no grid: its outline bends
 	}
-	score := func(x coordinates) float64 { return q.measure(v.c.path(x.place()), e.t).bad }
+	score := func(x coordinates) float64 { return q.measure(v.path(x.place()), e.t).bad }
 	for axis, marks := range v.c.marks {
 		last := len(marks) - 1
 		if axis == e.axis || last == 0 || surfaceOnly && (x[axis] == marks[last] || x[axis] == marks[0] && marks[0] < 0) {

@@ -122,16 +122,14 @@ type killer struct {
 	refC, lnBelow, lnAbove float64 // lnBelow, lnAbove: ln10/z, 1/K
 	floorC                 float64 // nothing is credited below it; −Inf for none
 	shiftK                 float64 // added to every temperature
-	far                    float64 // stretches whose rates lie this many e-folds below the top are left out
+	rough                  bool    // courses between straight lines serve to rank only
 }
 
 // killer of a limit: the error lowers the food, the margin raises the reference temperature.
 func (v *view) killer(t tilt) killer {
 	l := v.l
-	k := killer{refC: *l.ReferenceC + t.ownK, lnBelow: math.Ln10 / *l.ZK, floorC: math.Inf(-1), shiftK: -t.errK, far: 30}
-	if t.rank {
-		k.far = 8
-	}
+	k := killer{refC: *l.ReferenceC + t.ownK, lnBelow: math.Ln10 / *l.ZK, floorC: math.Inf(-1), shiftK: -t.errK}
+	k.rough = t.rank
 	k.lnAbove = k.lnBelow
 	if l.ZAboveK != nil {
 		k.lnAbove = math.Ln10 / *l.ZAboveK
@@ -162,25 +160,44 @@ func (k killer) over(p path, ivs []interval) float64 {
 			}
 		}
 		top += k.shiftK
+		if len(q.t) < 2 || top < k.floorC {
+			continue
+		}
+		known, last := -1, 0.0 // the knot whose rate is known, and that rate
 		for i := 0; i+1 < len(q.t); i++ {
-			sum += k.stretch(q, i, top)
+			a, b := q.c[i]+k.shiftK, q.c[i+1]+k.shiftK
+			if k.negligible(q, max(a, b), top) || q.t[i] == q.t[i+1] {
+				continue
+			}
+			if lo := min(a, b); q.at != nil || k.lnAbove != k.lnBelow || lo < k.floorC {
+				sum += k.stretch(q, i, top)
+				continue
+			}
+			if known != i {
+				last = math.Exp(k.lnBelow * (a - k.refC))
+			}
+			next := math.Exp(k.lnBelow * (b - k.refC))
+			sum += (q.t[i+1] - q.t[i]) * meanRate(k.lnBelow*(b-a)/2, last, next)
+			known, last = i+1, next
 		}
 	}
 	return sum
 }
 
+// negligible tells whether the rates of a stretch whose warmest end is hi lie too far below those at top to count, or below the floor.
+func (k killer) negligible(p path, hi, top float64) bool {
+	far := 30.0 // e-folds
+	if k.rough && p.at == nil {
+		far = 8
+	}
+	return hi < k.floorC || (top-hi)*k.lnBelow > far
+}
+
 // stretch adds up between two knots, split at the floor and at the reference temperature where z changes there. top is the
-// warmest temperature: stretches far below it are taken as straight, and those whose share is nothing are left out.
+// warmest temperature: stretches far below it are taken as straight.
 func (k killer) stretch(p path, i int, top float64) float64 {
 	a, b := p.c[i]+k.shiftK, p.c[i+1]+k.shiftK
-	lo, hi := a, b
-	if a > b {
-		lo, hi = b, a
-	}
-	if hi < k.floorC || p.t[i] == p.t[i+1] || (top-hi)*k.lnBelow > k.far {
-		return 0
-	}
-	if p.at == nil && lo >= k.floorC && (k.lnAbove == k.lnBelow || lo >= k.refC || hi <= k.refC) {
+	if lo, hi := min(a, b), max(a, b); p.at == nil && lo >= k.floorC && (k.lnAbove == k.lnBelow || lo >= k.refC || hi <= k.refC) {
 		return k.straight(p.t[i+1]-p.t[i], a, b)
 	}
 	ts := []float64{p.t[i], p.t[i+1]}
@@ -210,7 +227,7 @@ func (k killer) stretch(p path, i int, top float64) float64 {
 		if p.at == nil || (top-math.Max(cs[n], cs[n+1]))*k.lnBelow > 16 {
 			sum += k.straight(ts[n+1]-ts[n], cs[n], cs[n+1])
 		} else {
-			sum += k.gauss(p.at, ts[n], ts[n+1], cs[n], cs[n+1])
+			sum += k.gauss(p, ts[n], ts[n+1], cs[n], cs[n+1])
 		}
 	}
 	return sum
@@ -222,12 +239,16 @@ func (k killer) straight(dt, a, b float64) float64 {
 	if (a+b)/2 >= k.refC {
 		ln = k.lnAbove
 	}
-	x := ln * (b - a)
-	g := 1 + x*x/24 + x*x*x*x/1920
-	if math.Abs(x) > 1e-3 {
-		g = math.Sinh(x/2) / (x / 2)
+	return dt * meanRate(ln*(b-a)/2, math.Exp(ln*(a-k.refC)), math.Exp(ln*(b-k.refC)))
+}
+
+// meanRate is the mean of a rate that grows evenly by e^(2y) from one to another: their geometric mean times sinh(y)/y, by its
+// series where y is small.
+func meanRate(y, from, to float64) float64 {
+	if y2 := y * y; y2 < 0.25 {
+		return math.Sqrt(from) * math.Sqrt(to) * (1 + y2/6*(1+y2/20*(1+y2/42*(1+y2/72*(1+y2/110)))))
 	}
-	return dt * math.Exp(ln*((a+b)/2-k.refC)) * g
+	return (to - from) / (2 * y)
 }
 
 // Five-point Gauss-Legendre nodes and weights on −1…1 (Abramowitz and Stegun, table 25.4).
@@ -236,18 +257,35 @@ var (
 	gaussW = [5]float64{0.2369268850561891, 0.4786286704993665, 0.5688888888888889, 0.4786286704993665, 0.2369268850561891}
 )
 
+// gaussNodes are the five instants at which a course is asked between two.
+func gaussNodes(from, to float64) (t [5]float64) {
+	half, mid := (to-from)/2, (from+to)/2
+	for i, x := range gaussX {
+		t[i] = mid + half*x
+	}
+	return t
+}
+
 // gauss adds up the exact course between two instants, halved until the rate changes by less than a factor of about 4.5.
-func (k killer) gauss(at func(float64) float64, t0, t1, a, b float64) float64 {
+func (k killer) gauss(p path, t0, t1, a, b float64) float64 {
 	if math.Abs(b-a)*math.Max(k.lnBelow, k.lnAbove) > 1.5 && t1-t0 > leastS {
 		m := (t0 + t1) / 2
-		c := at(m) + k.shiftK
-		return k.gauss(at, t0, m, a, c) + k.gauss(at, m, t1, c, b)
+		c := p.at(m) + k.shiftK
+		return k.gauss(p, t0, m, a, c) + k.gauss(p, m, t1, c, b)
 	}
-	half, mid, sum := (t1-t0)/2, (t0+t1)/2, 0.0
-	for i, x := range gaussX {
-		sum += gaussW[i] * k.rate(at(mid+half*x)+k.shiftK)
+	var cs [5]float64
+	if p.nodes != nil {
+		cs = p.nodes(t0, t1)
+	} else {
+		for i, t := range gaussNodes(t0, t1) {
+			cs[i] = p.at(t)
+		}
 	}
-	return half * sum
+	sum := 0.0
+	for i, c := range cs {
+		sum += gaussW[i] * k.rate(c+k.shiftK)
+	}
+	return (t1 - t0) / 2 * sum
 }
 
 // credited is when the first and the last of the lethality was earned, to a thousandth of its top rate.

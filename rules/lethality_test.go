@@ -153,7 +153,7 @@ func TestPublishedLethality(t *testing.T) {
 			h := record(t, "cook 0-360", cookRestChill)
 			l := withLethality(p70(7.5))
 			v := newView(&l, newCourses(h))
-			return v.killer(tilt{errK: 0.5}).over(v.c.path(model.Place{}), v.heatings()[0]) / 60
+			return v.killer(tilt{errK: 0.5}).over(v.path(model.Place{}), v.heatings()[0]) / 60
 		},
 		"D_trap": func() float64 {
 			sum, words := 0.0, strings.Fields(cookRestChill)

@@ -91,7 +91,7 @@ func TestTurnBetweenKnotsIsSeen(t *testing.T) {
 	at := Where{Name: "here"}
 	h.Points = append(h.Points, model.Point{Name: "here", Place: place})
 	knots, low := math.Inf(1), math.Inf(1)
-	for _, x := range newCourses(h).path(place).c {
+	for _, x := range newCourses(h).path(place, interval{0, h.EndS()}).c {
 		knots = math.Min(knots, x)
 	}
 	for _, x := range readEvery(h, place, 0.5).c {

@@ -17,7 +17,7 @@ type courses struct {
 	rows  [][]float64 // rows[spot][time], °C
 	spots []model.Spot
 	end   float64
-	exact map[model.Place]path
+	exact map[model.Place]*known
 	light map[int][]float64 // of a spot: the instants that a local search looks at
 	pairs []neighbour       // nil until asked for
 	marks [3][]float64      // the spots' coordinates on each axis, rising, m; filled with pairs
@@ -37,10 +37,12 @@ func (c *courses) roughly() {
 		return
 	}
 	keep := make([]bool, len(c.times))
+	var few [][]float64
 	for n := 0; n < 5; n++ {
-		for _, i := range thin(c.times, c.rows[n*(len(c.rows)-1)/4], 0.3) {
-			keep[i] = true
-		}
+		few = append(few, c.rows[n*(len(c.rows)-1)/4])
+	}
+	for _, i := range thin(c.times, few, 0.3) {
+		keep[i] = true
 	}
 	for _, t := range c.bounds() {
 		keep[sort.SearchFloat64s(c.times, t)] = true
@@ -77,7 +79,7 @@ func (c *courses) bounds() []float64 {
 // newCourses prepares a history for judging.
 func newCourses(h *model.History) *courses {
 	scan := h.Scan()
-	c := &courses{h: h, end: h.EndS(), exact: map[model.Place]path{}, light: map[int][]float64{}}
+	c := &courses{h: h, end: h.EndS(), exact: map[model.Place]*known{}, light: map[int][]float64{}}
 	if scan == nil || len(scan.TimesS) == 0 {
 		return c
 	}
@@ -112,40 +114,100 @@ func (c *courses) insert(times []float64) {
 	c.times, c.rows = all, rows
 }
 
-// path is the exact course of a place.
-func (c *courses) path(p model.Place) path {
-	if q, ok := c.exact[p]; ok {
-		return q
-	}
-	out := make([]float64, len(c.times))
-	c.h.Course(p, c.times, out)
-	q := path{t: c.times, c: out}
-	if !c.h.Recorded {
-		q = refine(c.times, out, func(t, out []float64) { c.h.Course(p, t, out) }, func(t float64) float64 { return c.h.At(p, t) })
-	}
-	c.exact[p] = q
-	return q
+// known is what has been worked out of the exact course of a place: by step, and where it was asked between.
+type known struct {
+	pieces []path
+	at     func(t float64) float64
+	nodes  func(from, to float64) [5]float64
 }
 
-// lightTimes are the instants at which a local search beside a spot looks.
-func (c *courses) lightTimes(spot int) []float64 {
-	if t, ok := c.light[spot]; ok {
-		return t
+// path is the exact course of a place over the steps that an interval touches.
+func (c *courses) path(p model.Place, within interval) path {
+	k := c.exact[p]
+	if k == nil {
+		k = &known{pieces: make([]path, max(1, len(c.h.Spans))), at: c.asked(p), nodes: c.askedNodes(p)}
+		c.exact[p] = k
 	}
-	keep := map[float64]bool{}
-	for _, t := range c.bounds() {
-		keep[t] = true
+	var whole path
+	for i := range k.pieces {
+		span := interval{0, c.end}
+		if len(c.h.Spans) > 0 {
+			span = interval{c.h.Spans[i].StartS, c.h.Spans[i].EndS}
+		}
+		if len(k.pieces) > 1 && (span.b <= within.a && i+1 < len(k.pieces) || span.a >= within.b && i > 0) {
+			continue
+		}
+		if k.pieces[i].t == nil {
+			k.pieces[i] = c.piece(p, span, k.at)
+		}
+		whole = whole.then(k.pieces[i])
 	}
-	for _, i := range thin(c.times, c.rows[spot], 0.15) {
-		keep[c.times[i]] = true
+	if whole.at != nil {
+		whole.nodes = k.nodes
 	}
-	var t []float64
-	for x := range keep {
-		t = append(t, x)
+	return whole
+}
+
+// piece is the exact course of a place over one step.
+func (c *courses) piece(p model.Place, span interval, at func(t float64) float64) path {
+	q := path{t: c.times, c: c.times}.in(span)
+	out := make([]float64, len(q.t))
+	c.h.Course(p, q.t, out)
+	if c.h.Recorded {
+		return path{t: q.t, c: out}
 	}
-	sort.Float64s(t)
-	c.light[spot] = t
-	return t
+	return refine(q.t, out, func(t, out []float64) { c.h.Course(p, t, out) }, at)
+}
+
+// then joins a path to one that begins where it ends.
+func (p path) then(q path) path {
+	if len(p.t) == 0 {
+		return q
+	}
+	n := len(p.t)
+	return path{t: append(p.t[:n:n], q.t[1:]...), c: append(p.c[:n:n], q.c[1:]...), at: q.at}
+}
+
+// asked is the temperature of a place at any instant, which it remembers: limits and their unfavourable ends ask for the same.
+func (c *courses) asked(p model.Place) func(t float64) float64 {
+	known := map[float64]float64{}
+	return func(t float64) float64 {
+		x, ok := known[t]
+		if !ok {
+			x = c.h.At(p, t)
+			known[t] = x
+		}
+		return x
+	}
+}
+
+// askedNodes is the same for the five nodes of Gauss between two instants.
+func (c *courses) askedNodes(p model.Place) func(from, to float64) [5]float64 {
+	known := map[[2]float64][5]float64{}
+	return func(from, to float64) [5]float64 {
+		x, ok := known[[2]float64{from, to}]
+		if !ok {
+			t := gaussNodes(from, to)
+			c.h.Course(p, t[:], x[:])
+			known[[2]float64{from, to}] = x
+		}
+		return x
+	}
+}
+
+// lightTimes are the instants in an interval at which a local search beside a spot looks.
+func (c *courses) lightTimes(spot int, within interval) []float64 {
+	t, ok := c.light[spot]
+	if !ok {
+		t = c.bounds()
+		for _, i := range thin(c.times, c.rows[spot:spot+1], 0.15) {
+			t = append(t, c.times[i])
+		}
+		t = rising(t)
+		c.light[spot] = t
+	}
+	first, last := sort.SearchFloat64s(t, within.a), sort.SearchFloat64s(t, within.b)
+	return t[first:min(last+1, len(t))]
 }
 
 // medium is the course of the main surroundings, with a jump at each change; nil where some step has none.
@@ -238,6 +300,7 @@ type view struct {
 	runs   []run
 	stages []interval // where the limit's stages ran, joined where they meet; the whole chain if none is named
 	errK   float64
+	brief  bool // only verdict and place are wanted, and of what is not met no more than that
 	patchy bool // the limit does not apply to some places of the scan
 }
 
@@ -250,6 +313,25 @@ func newView(l *Limit, c *courses) *view {
 	v.stages = v.within(l.Stages)
 	return v
 }
+
+// reach is the part of the chain that the limit is about.
+func (v *view) reach() interval {
+	ivs := v.stages
+	if v.l.Clock != (Clock{}) {
+		ivs = v.spans()
+	}
+	if len(ivs) == 0 {
+		return interval{0, v.c.end}
+	}
+	iv := ivs[0]
+	for _, x := range ivs {
+		iv = interval{math.Min(iv.a, x.a), math.Max(iv.b, x.b)}
+	}
+	return iv
+}
+
+// path is the exact course of a place over what the limit is about.
+func (v *view) path(p model.Place) path { return v.c.path(p, v.reach()) }
 
 // within lists where stages ran, joined where they meet; the whole chain for none.
 func (v *view) within(stages []*model.Stage) []interval {
