@@ -14,17 +14,7 @@ var CoolWithin = &Kind{Name: "cool", Unit: "min", Needs: [][]string{{"To"}, {"Ti
 func judgeCool(v *view) Finding {
 	l := v.l
 	ws := v.windows()
-	q := question{unit: "min", need: *l.TimeS / 60}
-	q.measure = func(p path, t tilt) outcome {
-		worst := none(NotApplicable, "cool nowhere")
-		worst.bad = math.Inf(-1)
-		for _, w := range ws {
-			if o := v.coolWindow(p, w, t); worse(o, worst) {
-				worst = o
-			}
-		}
-		return worst
-	}
+	q := question{unit: "min", need: *l.TimeS / 60, measure: worstOf(ws, "cool nowhere", v.coolWindow)}
 	q.room = func(p path) float64 {
 		least := math.NaN()
 		for _, w := range ws {
@@ -35,6 +25,26 @@ func judgeCool(v *view) Finding {
 		return least
 	}
 	return v.judgePlaces(q)
+}
+
+// worstOf measures the least favourable of the windows that count; word is said where none does.
+func worstOf(ws []window, word string, one func(path, window, tilt) outcome) measure {
+	return func(p path, t tilt) outcome {
+		worst := nowhere(word)
+		for _, w := range ws {
+			if o := one(p, w, t); worse(o, worst) {
+				worst = o
+			}
+		}
+		return worst
+	}
+}
+
+// nowhere is the outcome of a place that a limit does not apply to.
+func nowhere(word string) outcome {
+	o := none(NotApplicable, word)
+	o.bad = math.Inf(-1)
+	return o
 }
 
 // clockStart finds when the clock of a window starts for a place by a fall: at its first fall to the crossing temperature after
@@ -101,9 +111,7 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 		return o
 	}
 	if !ok {
-		o := none(NotApplicable, "cool nowhere")
-		o.bad = math.Inf(-1)
-		return o
+		return nowhere("cool nowhere")
 	}
 	cold := l.coldSide(*l.ToC - t.errK - t.ownK)
 	q := p.in(w.interval)

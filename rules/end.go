@@ -39,8 +39,7 @@ func judgeEnd(v *view) Finding {
 		return least
 	}
 	q.measure = func(p path, t tilt) outcome {
-		worst := none(NotApplicable, "end nowhere")
-		worst.bad = math.Inf(-1)
+		worst := nowhere("end nowhere")
 		shown := t
 		shown.bound = false
 		last := instants(p, shown)

@@ -8,19 +8,8 @@ var HeatWithin = &Kind{Name: "heat", Unit: "min", Needs: [][]string{{"To"}, {"Ti
 	Help: "reaches To (and stays Second time) within Time of the clock", judge: judgeHeat}
 
 func judgeHeat(v *view) Finding {
-	ws := v.windows()
-	q := question{unit: "min", need: *v.l.TimeS / 60, warm: true, rises: true, adds: true}
-	q.measure = func(p path, t tilt) outcome {
-		worst := none(NotApplicable, "heat nowhere")
-		worst.bad = math.Inf(-1)
-		for _, w := range ws {
-			if o := v.heatWindow(p, w, t); worse(o, worst) {
-				worst = o
-			}
-		}
-		return worst
-	}
-	return v.judgePlaces(q)
+	return v.judgePlaces(question{unit: "min", need: *v.l.TimeS / 60, warm: true, rises: true, adds: true,
+		measure: worstOf(v.windows(), "heat nowhere", v.heatWindow)})
 }
 
 // heatStart is when the clock of a window starts for a place: with the stage, or when it first is at the crossing temperature.
@@ -46,9 +35,7 @@ func (v *view) heatWindow(p path, w window, t tilt) outcome {
 	q := p.in(w.interval)
 	start, ok := v.heatStart(q, w, t.errK)
 	if !ok {
-		o := none(NotApplicable, "heat nowhere")
-		o.bad = math.Inf(-1)
-		return o
+		return nowhere("heat nowhere")
 	}
 	second := 0.0
 	if l.SecondS != nil {
