@@ -217,10 +217,10 @@ func TestDemoHeadings(t *testing.T) {
 		t.Fatal(err)
 	}
 	for _, g := range grids {
-		for _, e := range g.rows[0].cells {
-			name, _ := splitHeading(e.text)
-			if c := SheetNamed(g.name).Column(name); c == nil || c.Title() != e.text {
-				t.Errorf("demo/%s.csv: %q is not a heading of the blank workbook", g.name, e.text)
+		for _, e := range g.Rows[0].Cells {
+			name, _ := SplitHeading(e.Text)
+			if c := SheetNamed(g.Name).Column(name); c == nil || c.Title() != e.Text {
+				t.Errorf("demo/%s.csv: %q is not a heading of the blank workbook", g.Name, e.Text)
 			}
 		}
 	}

@@ -10,7 +10,7 @@ func (r *reader) chains() {
 	if r.height == nil {
 		sheet := "Plan"
 		if g := r.grids["Plan"]; g != nil {
-			sheet = g.name
+			sheet = g.Name
 		}
 		r.height = []echoes{{sheet: sheet, list: []echo{{column: &Column{Heading: "Altitude"}, used: "0 m", text: "blank: the height of the sea is taken", blank: true}}}}
 	}
@@ -21,10 +21,10 @@ func (r *reader) chains() {
 		pr := r.processes[key(p.Process)]
 		if pr == nil || len(pr.steps) == 0 {
 			if pr != nil && len(p.own) > 0 {
-				p.line.fault("Process", p.Process, onlyOwnRows)
+				p.line.Fault("Process", p.Process, onlyOwnRows)
 				p.suffer(p.line.because)
 			} else if len(r.unread["Steps"]) == 0 {
-				p.line.fault("Process", p.Process, processUnknown, r.offer(p.Process, r.processNames))
+				p.line.Fault("Process", p.Process, processUnknown, r.offer(p.Process, r.processNames))
 				p.suffer(p.line.because)
 			}
 			continue
@@ -39,7 +39,7 @@ func (r *reader) chain(p *product, pr *process) {
 	own := len(p.own) > 0 || len(p.faces) > 0
 	for k, s := range p.own {
 		if pr.by[k] == nil {
-			s.line.fault("Step", s.Name, stepUnknown, pr.name, r.offer(s.Name, pr.stepNames))
+			s.line.Fault("Step", s.Name, stepUnknown, pr.name, r.offer(s.Name, pr.stepNames))
 			p.suffer(s.line.because)
 		}
 	}
@@ -117,13 +117,13 @@ func (r *reader) ask(p *product, pr *process) {
 		told[row{e.At.Sheet, e.At.Row}] = true
 	}
 	for _, l := range p.lines(pr) {
-		if !l.sound() {
-			told[row{l.t.grid.name, l.row.n}] = true
+		if !l.Sound() {
+			told[row{l.t.grid.Name, l.row.N}] = true
 		}
 	}
 	unsure := map[string]bool{} // without its sizes nobody knows where the product ends
-	if t := r.tables["Points"]; t != nil && !p.line.sound() {
-		unsure[t.grid.name] = true
+	if t := r.tables["Points"]; t != nil && !p.line.Sound() {
+		unsure[t.grid.Name] = true
 	}
 	for _, e := range model.Check(p.Product.Product, p.Steps) {
 		e = r.plan.Locate(e)
@@ -138,11 +138,11 @@ func (r *reader) ask(p *product, pr *process) {
 }
 
 // lines are the rows that a product is made of: its own, those of its food, steps and faces.
-func (p *product) lines(pr *process) []*line {
-	out := []*line{p.line}
+func (p *product) lines(pr *process) []*Line {
+	out := []*Line{p.line}
 	if p.food != nil {
 		for _, f := range p.food.lines {
-			out = append(out, f.line)
+			out = append(out, f.Line)
 		}
 	}
 	for _, s := range pr.steps {

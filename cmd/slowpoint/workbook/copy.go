@@ -88,7 +88,7 @@ func copyRows(rows Rows, old []byte) (out []byte, there, notCarried []string, er
 }
 
 // written gives a copy of the rows, each once in Tables and Groups, with the decimal sign of the plan.
-func (rows Rows) written(grids []*grid, c *copier) (Rows, error) {
+func (rows Rows) written(grids []*Grid, c *copier) (Rows, error) {
 	r := newReader(&Plan{})
 	if err := r.sheets(grids); err != nil {
 		return nil, err
@@ -146,11 +146,11 @@ type copySheet struct {
 }
 
 // find looks for a sheet among the user's.
-func (c *copier) find(s *Sheet, grids []*grid) (*copySheet, error) {
+func (c *copier) find(s *Sheet, grids []*Grid) (*copySheet, error) {
 	cs := &copySheet{Sheet: s, heads: map[string]*head{}, own: map[string]string{}}
-	var g *grid
+	var g *Grid
 	for _, x := range grids {
-		if sheetOf(x.name) == s {
+		if sheetOf(x.Name) == s {
 			g = x
 			break
 		}
@@ -159,38 +159,38 @@ func (c *copier) find(s *Sheet, grids []*grid) (*copySheet, error) {
 		return cs, nil
 	}
 	for _, n := range c.f.GetSheetList() {
-		if tidy(n) == g.name {
+		if tidy(n) == g.Name {
 			cs.name = n
 		}
 	}
 	switch {
-	case g.hidden:
-		return nil, fmt.Errorf("the sheet %s is hidden, and a hidden sheet is not read: unhide it, then copy again", g.name)
-	case g.refused != "":
-		return nil, fmt.Errorf("the sheet %s: %s", g.name, g.refused)
+	case g.Hidden:
+		return nil, fmt.Errorf("the sheet %s is hidden, and a hidden sheet is not read: unhide it, then copy again", g.Name)
+	case g.Refused != "":
+		return nil, fmt.Errorf("the sheet %s: %s", g.Name, g.Refused)
 	case cs.name == "":
-		return nil, fmt.Errorf("the sheet %s cannot be found again for a copy: give it a plain name", g.name)
-	case len(g.rows) == 0:
+		return nil, fmt.Errorf("the sheet %s cannot be found again for a copy: give it a plain name", g.Name)
+	case len(g.Rows) == 0:
 		return cs, nil
 	}
 	i, whole := findHeader(g, s)
 	if !whole {
-		return nil, fmt.Errorf("the sheet %s has no row with all its headings: %s can be added only under headings; slowpoint read says what is missing", g.name, strings.ToLower(s.Name))
+		return nil, fmt.Errorf("the sheet %s has no row with all its headings: %s can be added only under headings; slowpoint read says what is missing", g.Name, strings.ToLower(s.Name))
 	}
-	top := &g.rows[i]
-	cs.heads, cs.head = headings(s, top), top.n
+	top := &g.Rows[i]
+	cs.heads, cs.head = headings(s, top), top.N
 	for name, h := range cs.heads {
-		_, cs.own[name] = splitHeading(top.at(h.col).text)
+		_, cs.own[name] = SplitHeading(top.at(h.col).Text)
 	}
-	for _, row := range g.rows {
-		cs.last = row.n
-		cs.wide = max(cs.wide, int(row.cells[len(row.cells)-1].col))
+	for _, row := range g.Rows {
+		cs.last = row.N
+		cs.wide = max(cs.wide, int(row.Cells[len(row.Cells)-1].Col))
 	}
-	for _, row := range g.rows[i+1:] {
+	for _, row := range g.Rows[i+1:] {
 		cells := map[string]string{}
 		for name, h := range cs.heads {
-			if e := row.at(h.col); e.kind != blank {
-				cells[name] = e.text
+			if e := row.at(h.col); e.Kind != Blank {
+				cells[name] = e.Text
 			}
 		}
 		cs.rows = append(cs.rows, cells)
@@ -367,7 +367,7 @@ func (cs *copySheet) add(c *copier, rows []map[string]string) error {
 		return err
 	}
 	for _, t := range tables {
-		if b, ok := parseBlock(t.Range); ok && b.top == cs.head {
+		if b, ok := parseBlock(t.Range); ok && b.Top == cs.head {
 			c.short = append(c.short, fmt.Sprintf("the new rows are not part of the table %s of the sheet %s, which ends above them: drag its corner down", t.Name, cs.name))
 		}
 	}
@@ -462,23 +462,23 @@ func (cs *copySheet) headingFor(c *copier, col *Column) error {
 }
 
 // unchanged holds every filled cell of the old workbook against the new one.
-func unchanged(old []*grid, now []byte) error {
+func unchanged(old []*Grid, now []byte) error {
 	grids, err := readWorkbook(now)
 	if err != nil {
 		return fmt.Errorf("the copy cannot be read again: %w", err)
 	}
 	for i, g := range old {
-		if i >= len(grids) || grids[i].name != g.name || grids[i].hidden != g.hidden {
-			return fmt.Errorf("the copy would change the sheet %s, so none is written; add the rows by hand", g.name)
+		if i >= len(grids) || grids[i].Name != g.Name || grids[i].Hidden != g.Hidden {
+			return fmt.Errorf("the copy would change the sheet %s, so none is written; add the rows by hand", g.Name)
 		}
-		rows := map[int]*gridRow{}
-		for j := range grids[i].rows {
-			rows[grids[i].rows[j].n] = &grids[i].rows[j]
+		rows := map[int]*Row{}
+		for j := range grids[i].Rows {
+			rows[grids[i].Rows[j].N] = &grids[i].Rows[j]
 		}
-		for _, row := range g.rows {
-			for _, e := range row.cells {
-				if n := rows[row.n]; n == nil || n.hidden != row.hidden || *n.at(int(e.col)) != e {
-					return fmt.Errorf("the copy would change the cell %s, so none is written; add the rows by hand", cell.Ref{Sheet: g.name, Row: row.n, Col: int(e.col)})
+		for _, row := range g.Rows {
+			for _, e := range row.Cells {
+				if n := rows[row.N]; n == nil || n.Hidden != row.Hidden || *n.at(int(e.Col)) != e {
+					return fmt.Errorf("the copy would change the cell %s, so none is written; add the rows by hand", cell.Ref{Sheet: g.Name, Row: row.N, Col: int(e.Col)})
 				}
 			}
 		}

@@ -22,8 +22,8 @@ func (r *reader) readCourses() {
 		return
 	}
 	for _, l := range t.lines {
-		name := l.words("Course")
-		at, temp, rh := l.number("Time"), l.number("Temperature"), l.number("Relative humidity")
+		name := l.Words("Course")
+		at, temp, rh := l.Number("Time"), l.Number("Temperature"), l.Number("Relative humidity")
 		if name == "" {
 			continue
 		}
@@ -32,21 +32,21 @@ func (r *reader) readCourses() {
 			c = &course{Course: model.Course{Name: name}}
 			r.courses[key(name)] = c
 			if at != nil && *at != 0 {
-				l.fault("Time", l.entry("Time").text, courseStart, name)
+				l.Fault("Time", l.Entry("Time").Text, courseStart, name)
 			}
 		}
 		n := len(c.TimesS)
 		switch {
 		case at == nil || temp == nil:
 		case n > 0 && *at <= c.TimesS[n-1]:
-			l.fault("Time", l.entry("Time").text, courseOrder, minutes(c.TimesS[n-1]))
+			l.Fault("Time", l.Entry("Time").Text, courseOrder, minutes(c.TimesS[n-1]))
 		default:
 			c.TimesS, c.C = append(c.TimesS, *at), append(c.C, *temp)
 			if rh != nil {
 				c.RH = append(c.RH, *rh)
 			}
 			if (len(c.RH) > 0) != (rh != nil) || rh != nil && len(c.RH) != len(c.C) {
-				l.fault("Relative humidity", "", courseHumidity, name)
+				l.Fault("Relative humidity", "", courseHumidity, name)
 			}
 		}
 		reasons(&c.because, l.because)
@@ -67,7 +67,7 @@ func (r *reader) courseNames() []string {
 }
 
 // cut gives the part of a course that its step lasts; a course that is shorter is a fault, a longer one a note.
-func (c *course) cut(l *line, durationS float64) model.Course {
+func (c *course) cut(l *Line, durationS float64) model.Course {
 	m := c.Course
 	n := len(m.TimesS)
 	if n == 0 || durationS <= 0 || len(c.because) > 0 {
@@ -77,9 +77,9 @@ func (c *course) cut(l *line, durationS float64) model.Course {
 	const slack = 1e-9 // of rounding, where times and durations are typed in other units
 	switch {
 	case last < durationS*(1-slack):
-		l.fault("Course", m.Name, courseShort, minutes(last), minutes(durationS))
+		l.Fault("Course", m.Name, courseShort, minutes(last), minutes(durationS))
 	case last > durationS*(1+slack):
-		l.remark(cell.Note, "Course", m.Name, courseLong, minutes(last), minutes(durationS))
+		l.Remark(cell.Note, "Course", m.Name, courseLong, minutes(last), minutes(durationS))
 		i := sort.SearchFloat64s(m.TimesS, durationS) // the first point at or after the end
 		end := func(y []float64) []float64 {
 			f := (durationS - m.TimesS[i-1]) / (m.TimesS[i] - m.TimesS[i-1])

@@ -24,7 +24,7 @@ const (
 )
 
 // readFolder reads the sheets of a folder.
-func readFolder(folder string) ([]*grid, string, error) { return readFiles(os.DirFS(folder), folder) }
+func readFolder(folder string) ([]*Grid, string, error) { return readFiles(os.DirFS(folder), folder) }
 
 // reason is the plain cause of a failed file operation.
 func reason(err error) string {
@@ -36,38 +36,38 @@ func reason(err error) string {
 }
 
 // csvGrid reads one CSV file. What cannot be read is told in refused.
-func csvGrid(name string, data []byte) *grid {
-	g := &grid{name: tidy(name), csv: true}
+func csvGrid(name string, data []byte) *Grid {
+	g := &Grid{Name: tidy(name), CSV: true}
 	data = bytes.TrimPrefix(data, []byte("\xef\xbb\xbf"))
 	switch {
 	case bytes.HasPrefix(data, []byte("\xff\xfe")) || bytes.HasPrefix(data, []byte("\xfe\xff")):
-		g.refused, g.mend = fill(notUTF8.msg, []string{"it is UTF-16"}), notUTF8.hint
+		g.Refused, g.Mend = fill(notUTF8.msg, []string{"it is UTF-16"}), notUTF8.hint
 		return g
 	case !utf8.Valid(data):
-		g.refused, g.mend = fill(notUTF8.msg, []string{fmt.Sprintf("line %d", 1+bytes.Count(data[:badByte(data)], []byte("\n")))}), notUTF8.hint
+		g.Refused, g.Mend = fill(notUTF8.msg, []string{fmt.Sprintf("line %d", 1+bytes.Count(data[:badByte(data)], []byte("\n")))}), notUTF8.hint
 		return g
 	case bytes.HasPrefix(data, []byte("PK\x03\x04")):
-		g.refused, g.mend = fill(csvUnreadable.msg, []string{"it is a workbook"}), "save the sheet as CSV, or give the workbook itself as the plan"
+		g.Refused, g.Mend = fill(csvUnreadable.msg, []string{"it is a workbook"}), "save the sheet as CSV, or give the workbook itself as the plan"
 		return g
 	}
 	data = bytes.TrimRight(data, "\x00")
 	if i := bytes.IndexByte(data, 0); i >= 0 {
-		g.refused, g.mend = fill(csvUnreadable.msg, []string{fmt.Sprintf("line %d holds zero bytes, so a part of it is lost", 1+bytes.Count(data[:i], []byte("\n")))}), "ask for a fresh copy, or save the sheet as CSV UTF-8 again"
+		g.Refused, g.Mend = fill(csvUnreadable.msg, []string{fmt.Sprintf("line %d holds zero bytes, so a part of it is lost", 1+bytes.Count(data[:i], []byte("\n")))}), "ask for a fresh copy, or save the sheet as CSV UTF-8 again"
 		return g
 	}
 	if !bytes.ContainsRune(data, '\n') { // lines end with \r alone, as old spreadsheet programs on the Mac have it
 		data = bytes.ReplaceAll(data, []byte("\r"), []byte("\n"))
 	}
-	sheet := sheetOf(g.name)
+	sheet := sheetOf(g.Name)
 	best, score := ',', -1
 	for _, d := range []rune{',', ';', '\t'} {
 		if n := likeness(sheet, data, d); n > score {
 			best, score = d, n
 		}
 	}
-	g.rows, g.refused = csvRows(data, best, mostRows)
-	if g.refused != "" {
-		g.mend = "save the sheet as CSV again from your spreadsheet program"
+	g.Rows, g.Refused = csvRows(data, best, mostRows)
+	if g.Refused != "" {
+		g.Mend = "save the sheet as CSV again from your spreadsheet program"
 	}
 	g.commas = best == ','
 	return g
@@ -94,12 +94,12 @@ func likeness(sheet *Sheet, data []byte, d rune) int {
 			n = len(headings(sheet, &rows[i]))
 		}
 		if n > best {
-			best, width = n, len(rows[i].cells)
+			best, width = n, len(rows[i].Cells)
 		}
 	}
 	same := 0
 	for i := range rows {
-		if len(rows[i].cells) > 1 && len(rows[i].cells) <= max(width, 2) {
+		if len(rows[i].Cells) > 1 && len(rows[i].Cells) <= max(width, 2) {
 			same++
 		}
 	}
@@ -107,7 +107,7 @@ func likeness(sheet *Sheet, data []byte, d rune) int {
 }
 
 // csvRows reads at most most filled rows. Row numbers are those that a spreadsheet shows: a line break within quotes starts no row.
-func csvRows(data []byte, d rune, most int) (rows []gridRow, refused string) {
+func csvRows(data []byte, d rune, most int) (rows []Row, refused string) {
 	r := csv.NewReader(bytes.NewReader(data))
 	r.Comma, r.FieldsPerRecord, r.ReuseRecord = d, -1, true
 	breaks := 0 // line breaks within quotes so far
@@ -125,24 +125,24 @@ func csvRows(data []byte, d rune, most int) (rows []gridRow, refused string) {
 			return rows, fill(csvUnreadable.msg, []string{err.Error()})
 		}
 		line, _ := r.FieldPos(0)
-		row := gridRow{n: line - breaks}
+		row := Row{N: line - breaks}
 		for i, f := range rec {
 			breaks += strings.Count(f, "\n")
 			if f = tidy(f); f != "" {
 				if i >= mostColumns || tooLong(f, mostText) {
 					return rows, fill(csvUnreadable.msg, []string{fmt.Sprintf("line %d has more than %d columns or a cell of more than %d characters", line, mostColumns, mostText)})
 				}
-				k := text
+				k := Text
 				if failed(f) {
-					k = broken
+					k = Broken
 				}
-				row.cells = append(row.cells, entry{text: strings.Clone(f), col: int32(i + 1), kind: k})
+				row.Cells = append(row.Cells, Entry{Text: strings.Clone(f), Col: int32(i + 1), Kind: k})
 			}
 		}
-		if len(row.cells) == 0 {
+		if len(row.Cells) == 0 {
 			continue
 		}
-		if cells += len(row.cells); cells > mostCells {
+		if cells += len(row.Cells); cells > mostCells {
 			return rows, fill(csvUnreadable.msg, []string{fmt.Sprintf("more than %d cells", mostCells)})
 		}
 		if rows = append(rows, row); len(rows) > most {

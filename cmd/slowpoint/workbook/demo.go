@@ -15,7 +15,7 @@ var demoFiles embed.FS
 const demoName = "demo"
 
 // demoGrids reads the files of the demo plan.
-func demoGrids() ([]*grid, string, error) {
+func demoGrids() ([]*Grid, string, error) {
 	files, err := fs.Sub(demoFiles, "demo")
 	if err != nil {
 		return nil, "", err
@@ -40,16 +40,16 @@ func demoRows() (map[string][]map[string]string, error) {
 	}
 	out := map[string][]map[string]string{}
 	for _, g := range grids {
-		s := SheetNamed(g.name)
-		if s == nil || g.refused != "" || len(g.rows) == 0 {
-			return nil, fmt.Errorf("demo/%s.csv is not a sheet of a plan %s", g.name, g.refused)
+		s := SheetNamed(g.Name)
+		if s == nil || g.Refused != "" || len(g.Rows) == 0 {
+			return nil, fmt.Errorf("demo/%s.csv is not a sheet of a plan %s", g.Name, g.Refused)
 		}
-		heads := headings(s, &g.rows[0])
-		for _, row := range g.rows[1:] {
+		heads := headings(s, &g.Rows[0])
+		for _, row := range g.Rows[1:] {
 			cells := map[string]string{}
 			for name, h := range heads {
-				if e := row.at(h.col); e.kind != blank {
-					cells[name] = e.text
+				if e := row.at(h.col); e.Kind != Blank {
+					cells[name] = e.Text
 				}
 			}
 			out[s.Name] = append(out[s.Name], cells)

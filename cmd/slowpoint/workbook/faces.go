@@ -10,7 +10,7 @@ import (
 // face is a row of Faces.
 type face struct {
 	model.FaceExposure
-	line   *line
+	line   *Line
 	course *course
 }
 
@@ -21,9 +21,9 @@ func (r *reader) readFaces() {
 		return
 	}
 	for _, l := range t.lines {
-		procName, prodName, stepName := l.words("Process"), l.words("Product"), l.words("Step")
+		procName, prodName, stepName := l.Words("Process"), l.Words("Product"), l.Words("Step")
 		f := &face{line: l}
-		if w := l.choice("Face"); w != "" {
+		if w := l.Choice("Face"); w != "" {
 			for _, m := range model.Faces {
 				if m.Name == w {
 					f.Face = m
@@ -34,7 +34,7 @@ func (r *reader) readFaces() {
 		if pr == nil {
 			f.course = r.exposure(l, &f.Exposure, 0)
 			if procName != "" && len(r.unread["Steps"]) == 0 {
-				l.fault("Process", procName, processUnknown, r.offer(procName, r.processNames))
+				l.Fault("Process", procName, processUnknown, r.offer(procName, r.processNames))
 				r.astray(procName, prodName, l.because)
 			}
 			continue
@@ -43,7 +43,7 @@ func (r *reader) readFaces() {
 		if s == nil {
 			f.course = r.exposure(l, &f.Exposure, 0)
 			if stepName != "" {
-				l.fault("Step", stepName, stepUnknown, pr.name, r.offer(stepName, pr.stepNames))
+				l.Fault("Step", stepName, stepUnknown, pr.name, r.offer(stepName, pr.stepNames))
 			}
 			r.concern(pr, prodName, l.because)
 			continue
@@ -74,7 +74,7 @@ func (r *reader) astray(procName, prodName string, es cell.Errors) {
 }
 
 // hang puts a face on its step, for all products of the process or for one.
-func (r *reader) hang(l *line, pr *process, s *step, f *face, prodName string) {
+func (r *reader) hang(l *Line, pr *process, s *step, f *face, prodName string) {
 	if prodName == "" {
 		if !f.twice(s.faces) && f.Face != nil {
 			s.faces = append(s.faces, f)
@@ -100,7 +100,7 @@ func (r *reader) hang(l *line, pr *process, s *step, f *face, prodName string) {
 func (f *face) twice(others []*face) bool {
 	for _, o := range others {
 		if f.Face != nil && o.Face == f.Face {
-			f.line.fault("Face", f.Face.Name, faceTwice, strconv.Itoa(o.At.Row))
+			f.line.Fault("Face", f.Face.Name, faceTwice, strconv.Itoa(o.At.Row))
 			return true
 		}
 	}
@@ -157,9 +157,9 @@ func (p *product) faceFits(f *face) {
 		}
 	}
 	if len(p.Shape.Faces) == 0 {
-		f.line.fault("Face", f.Face.Name, faceNone, p.Shape.Name)
+		f.line.Fault("Face", f.Face.Name, faceNone, p.Shape.Name)
 	} else {
-		f.line.fault("Face", f.Face.Name, faceWrong, p.Shape.Name, and(names(p.Shape.Faces, func(f *model.Face) string { return f.Name })))
+		f.line.Fault("Face", f.Face.Name, faceWrong, p.Shape.Name, and(names(p.Shape.Faces, func(f *model.Face) string { return f.Name })))
 	}
 	p.because.Add(f.line.because[len(f.line.because)-1])
 	f.line.because = f.line.because[:len(f.line.because)-1] // other products of the process have other shapes

@@ -22,7 +22,7 @@ type food struct {
 
 // foodLine is a row of Foods.
 type foodLine struct {
-	*line
+	*Line
 	parts             [6]*float64
 	air, at           *float64
 	k, rho, c         *float64
@@ -43,7 +43,7 @@ func (r *reader) readFoods() {
 	}
 	var order []*food
 	for _, l := range t.lines {
-		name := l.words("Food")
+		name := l.Words("Food")
 		fl := readFoodLine(l)
 		if name == "" {
 			continue
@@ -68,24 +68,24 @@ func (r *reader) readFoods() {
 	}
 }
 
-func readFoodLine(l *line) *foodLine {
-	fl := &foodLine{line: l}
+func readFoodLine(l *Line) *foodLine {
+	fl := &foodLine{Line: l}
 	for i, n := range partNames {
-		fl.parts[i] = l.number(n)
-		fl.composed = fl.composed || l.filled(n)
+		fl.parts[i] = l.Number(n)
+		fl.composed = fl.composed || l.Filled(n)
 	}
-	fl.air, fl.at = l.number("Air by volume"), l.number("At temperature")
-	fl.k, fl.rho, fl.c = l.number("Conductivity"), l.number("Density"), l.number("Specific heat")
-	fl.measure = l.filled("Conductivity") || l.filled("Specific heat")
-	fl.freezing, fl.aw = l.number("Freezing point"), l.number("Water activity")
-	if w := l.choice("Flows"); w != "" {
+	fl.air, fl.at = l.Number("Air by volume"), l.Number("At temperature")
+	fl.k, fl.rho, fl.c = l.Number("Conductivity"), l.Number("Density"), l.Number("Specific heat")
+	fl.measure = l.Filled("Conductivity") || l.Filled("Specific heat")
+	fl.freezing, fl.aw = l.Number("Freezing point"), l.Number("Water activity")
+	if w := l.Choice("Flows"); w != "" {
 		for _, f := range model.Flows {
 			if f.Name == w {
 				fl.flow = f
 			}
 		}
 	}
-	fl.source = l.words("Source")
+	fl.source = l.Words("Source")
 	return fl
 }
 
@@ -98,7 +98,7 @@ func (f *food) make() {
 		}
 		return
 	}
-	if first.source == "" || !first.sound() {
+	if first.source == "" || !first.Sound() {
 		return
 	}
 	if first.composed {
@@ -107,13 +107,13 @@ func (f *food) make() {
 		f.measured()
 	}
 	if m := f.material; m != nil {
-		m.At, m.FreezingC, m.WaterActivity, m.Flow = first.ref(), f.common(func(l *foodLine) *float64 { return l.freezing }), f.common(func(l *foodLine) *float64 { return l.aw }), model.FlowsNo
+		m.At, m.FreezingC, m.WaterActivity, m.Flow = first.Ref(), f.common(func(l *foodLine) *float64 { return l.freezing }), f.common(func(l *foodLine) *float64 { return l.aw }), model.FlowsNo
 		for _, l := range f.lines {
 			if l.flow != nil {
 				m.Flow = l.flow
 			}
 		}
-		if !first.filled("Flows") {
+		if !first.Filled("Flows") {
 			first.note("Flows", "", model.FlowsNo.Name, "blank: solid or set is taken")
 		}
 	}
@@ -125,26 +125,26 @@ func (f *food) agrees(l *foodLine) bool {
 	switch {
 	case l.composed && l.measure:
 		head := "Conductivity"
-		if !l.filled(head) {
+		if !l.Filled(head) {
 			head = "Specific heat"
 		}
-		l.fault(head, l.entry(head).text, foodMixed)
+		l.Fault(head, l.Entry(head).Text, foodMixed)
 	case l.composed && l != first || first.composed && l != first:
-		l.fault("Food", f.name, foodTwice, strconv.Itoa(first.row.n))
-	case !l.composed && !l.measure && !l.filled("Density"):
-		l.fault("", "", foodNothing)
+		l.Fault("Food", f.name, foodTwice, strconv.Itoa(first.row.N))
+	case !l.composed && !l.measure && !l.Filled("Density"):
+		l.Fault("", "", foodNothing)
 	}
 	for _, h := range []string{"Freezing point", "Water activity", "Flows"} {
 		for _, o := range f.lines {
 			if o == l {
 				break
 			}
-			if o.filled(h) && l.filled(h) && key(o.entry(h).text) != key(l.entry(h).text) {
-				l.fault(h, l.entry(h).text, foodUnlike, strconv.Itoa(o.row.n), o.entry(h).text)
+			if o.Filled(h) && l.Filled(h) && key(o.Entry(h).Text) != key(l.Entry(h).Text) {
+				l.Fault(h, l.Entry(h).Text, foodUnlike, strconv.Itoa(o.row.N), o.Entry(h).Text)
 			}
 		}
 	}
-	return l.sound()
+	return l.Sound()
 }
 
 // common is a value that one of the rows gives; nil if none does.
@@ -174,10 +174,10 @@ func (f *food) compose() {
 	switch {
 	case errors.As(err, &faults):
 		for _, x := range faults {
-			l.fault(x.Field, "", asFound, strings.ToUpper(x.Msg[:1])+x.Msg[1:], x.Hint)
+			l.Fault(x.Field, "", asFound, strings.ToUpper(x.Msg[:1])+x.Msg[1:], x.Hint)
 		}
 	case err != nil:
-		l.fault("", "", asFound, err.Error(), "")
+		l.Fault("", "", asFound, err.Error(), "")
 	default:
 		f.material = &m
 	}
@@ -187,17 +187,17 @@ func (f *food) compose() {
 func (f *food) measured() {
 	for _, l := range f.lines {
 		for _, h := range []string{"Conductivity", "Density", "Specific heat"} {
-			if !l.filled(h) {
-				l.fault(h, "", foodPartly, h)
+			if !l.Filled(h) {
+				l.Fault(h, "", foodPartly, h)
 			}
 		}
-		if l.filled("Air by volume") {
-			l.fault("Air by volume", l.entry("Air by volume").text, airWithMeasured)
+		if l.Filled("Air by volume") {
+			l.Fault("Air by volume", l.Entry("Air by volume").Text, airWithMeasured)
 		}
-		if len(f.lines) > 1 && !l.filled("At temperature") {
-			l.fault("At temperature", "", foodNoAt, f.name)
+		if len(f.lines) > 1 && !l.Filled("At temperature") {
+			l.Fault("At temperature", "", foodNoAt, f.name)
 		}
-		if !l.sound() {
+		if !l.Sound() {
 			return
 		}
 	}
@@ -212,7 +212,7 @@ func (f *food) measured() {
 	sort.SliceStable(rows, func(i, j int) bool { return *rows[i].at < *rows[j].at })
 	for i := 1; i < len(rows); i++ {
 		if *rows[i].at == *rows[i-1].at {
-			rows[i].fault("At temperature", rows[i].entry("At temperature").text, foodSameAt, strconv.Itoa(rows[i-1].row.n))
+			rows[i].Fault("At temperature", rows[i].Entry("At temperature").Text, foodSameAt, strconv.Itoa(rows[i-1].row.N))
 			return
 		}
 	}

@@ -7,71 +7,71 @@ import (
 	"golang.org/x/text/unicode/norm"
 )
 
-// grid is a sheet as it stands in the file, without any meaning.
-type grid struct {
-	name    string // as the user named it
-	rows    []gridRow
-	merged  []block
-	hidden  bool         // the whole sheet
-	hiddenC map[int]bool // hidden columns
+// Grid is a sheet as it stands in the file, without any meaning.
+type Grid struct {
+	Name    string // as the user named it
+	Rows    []Row
+	Merged  []Block
+	Hidden  bool         // the whole sheet
+	HiddenCols map[int]bool // hidden columns
 	words   []string     // that number formats show behind a number, as 0.0" cm" does
-	csv     bool
+	CSV     bool
 	commas  bool   // CSV whose cells are divided by commas
-	is1904  bool   // its dates count from 1904
-	refused string // why nothing in it can be used: goes into a fault of the whole sheet
-	mend    string
+	Is1904  bool   // its dates count from 1904
+	Refused string // why nothing in it can be used: goes into a fault of the whole sheet
+	Mend    string
 }
 
-// gridRow is a row with at least one filled cell.
-type gridRow struct {
-	n      int // from 1
-	hidden bool
-	cells  []entry // filled ones, in order of their columns
+// Row is a row with at least one filled cell.
+type Row struct {
+	N      int // from 1
+	Hidden bool
+	Cells  []Entry // filled ones, in order of their columns
 }
 
-// block is a range of cells, from 1, ends included.
-type block struct{ left, top, right, bottom int }
+// Block is a range of cells, from 1, ends included.
+type Block struct{ Left, Top, Right, Bottom int }
 
-// kind of a cell's content.
-type kind uint8
+// Kind of a cell's content.
+type Kind uint8
 
 const (
-	blank    kind = iota
-	text          // words
-	figure        // a number; text holds its digits, decimal point, as stored
-	truth         // TRUE or FALSE
-	broken        // #N/A and its like
-	noStored      // a formula without a stored result
+	Blank    Kind = iota
+	Text          // words
+	Figure        // a number; text holds its digits, decimal point, as stored
+	Truth         // TRUE or FALSE
+	Broken        // #N/A and its like
+	NoStored      // a formula without a stored result
 )
 
-// form is what a number format makes of a number.
-type form uint8
+// Form is what a number format makes of a number.
+type Form uint8
 
 const (
-	bare form = iota
-	percent
-	clock  // duration or time of day, in days
-	date   // in days
-	worded // and above: shows words behind the number, which are in grid.words
+	Bare Form = iota
+	Percent
+	Clock  // duration or time of day, in days
+	Date   // in days
+	Worded // and above: shows words behind the number, which are in grid.words
 )
 
-// entry is one filled cell.
-type entry struct {
-	text    string
-	col     int32
-	kind    kind
-	form    form
-	formula bool
-	struck  bool // struck through, wholly or in part
+// Entry is one filled cell.
+type Entry struct {
+	Text    string
+	Col     int32
+	Kind    Kind
+	Form    Form
+	Formula bool
+	Struck  bool // struck through, wholly or in part
 }
 
-var nothing entry
+var nothing Entry
 
 // at gives the cell of a column; a blank one if it is not filled.
-func (r *gridRow) at(col int) *entry {
-	for i := range r.cells {
-		if int(r.cells[i].col) == col {
-			return &r.cells[i]
+func (r *Row) at(col int) *Entry {
+	for i := range r.Cells {
+		if int(r.Cells[i].Col) == col {
+			return &r.Cells[i]
 		}
 	}
 	return &nothing

@@ -68,7 +68,7 @@ func (ls *limits) scope(name string, products []*product) *scope {
 func (ls *limits) stepsAtFault(p *product) bool {
 	g := ls.grids["Steps"]
 	for _, e := range p.because {
-		if g == nil || e.At.Sheet == g.name {
+		if g == nil || e.At.Sheet == g.Name {
 			return true
 		}
 	}
@@ -92,7 +92,7 @@ type timeTable struct {
 // group is a row of Groups.
 type group struct {
 	rules.Group
-	line *line
+	line *Line
 }
 
 // readLimits reads Tables, Groups and Limits. A limit with faults is kept, so that it is judged as cannot tell and not left out.
@@ -108,7 +108,7 @@ func (r *reader) readLimits() {
 		return
 	}
 	for _, l := range t.lines {
-		ls.inLimits[key(l.entry("Group").text)] = true
+		ls.inLimits[key(l.Entry("Group").Text)] = true
 	}
 	ls.checkGroups()
 	for _, l := range t.lines {
@@ -122,7 +122,7 @@ func (r *reader) readLimits() {
 		}
 	}
 	for _, l := range t.strays { // nor what these rows were meant to be
-		ls.unknown(l.ref(), "(row "+strconv.Itoa(l.row.n)+")", l.because[0])
+		ls.unknown(l.Ref(), "(row "+strconv.Itoa(l.row.N)+")", l.because[0])
 	}
 	for _, sc := range ls.order {
 		for _, p := range sc.products {
@@ -133,10 +133,10 @@ func (r *reader) readLimits() {
 
 // against holds a row of a table against the rows before it: one temperature has one time, and what is hotter than the row before does
 // not take longer.
-func (tt *timeTable) against(l *line, c, s float64) {
+func (tt *timeTable) against(l *Line, c, s float64) {
 	k := math.Round(c * 1e6)
 	if i, there := tt.byC[k]; there && tt.Rows[i].S != s {
-		l.fault("Temperature", l.entry("Temperature").text, tableSameAt, strconv.Itoa(tt.Rows[i].At.Row))
+		l.Fault("Temperature", l.Entry("Temperature").Text, tableSameAt, strconv.Itoa(tt.Rows[i].At.Row))
 		return
 	}
 	if tt.byC == nil {
@@ -145,7 +145,7 @@ func (tt *timeTable) against(l *line, c, s float64) {
 	tt.byC[k] = len(tt.Rows)
 	if n := len(tt.Rows); n > 0 {
 		if o := &tt.Rows[n-1]; c > o.C && s > o.S || c < o.C && s < o.S {
-			l.remark(cell.Warning, "Time", l.entry("Time").text, tableRising, strconv.Itoa(o.At.Row), o.Typed)
+			l.Remark(cell.Warning, "Time", l.Entry("Time").Text, tableRising, strconv.Itoa(o.At.Row), o.Typed)
 		}
 	}
 }
@@ -162,18 +162,18 @@ func (ls *limits) readTables() {
 		return
 	}
 	for _, l := range t.lines {
-		name, at, time := l.words("Table"), l.value("Temperature"), l.value("Time")
+		name, at, time := l.Words("Table"), l.Value("Temperature"), l.Value("Time")
 		if name == "" {
 			continue
 		}
 		tt := ls.tables[key(name)]
 		if tt == nil {
-			tt = &timeTable{Table: rules.Table{At: l.ref(), Name: name}}
+			tt = &timeTable{Table: rules.Table{At: l.Ref(), Name: name}}
 			ls.tables[key(name)] = tt
 		}
 		if at != nil && time != nil {
 			tt.against(l, at.Computed, time.Computed)
-			tt.Rows = append(tt.Rows, rules.Row{At: l.ref(), C: at.Computed, S: time.Computed, Typed: at.Typed + ", " + time.Typed})
+			tt.Rows = append(tt.Rows, rules.Row{At: l.Ref(), C: at.Computed, S: time.Computed, Typed: at.Typed + ", " + time.Typed})
 		}
 		reasons(&tt.because, l.because)
 		tt.aside = tt.aside || l.aside
@@ -188,12 +188,12 @@ func (ls *limits) readGroups() {
 	}
 	for _, l := range t.lines {
 		g := &group{line: l}
-		g.At, g.Name, g.AnyOf, g.Within = l.ref(), l.words("Group"), l.choice("Join") == "any of", l.words("Within")
+		g.At, g.Name, g.AnyOf, g.Within = l.Ref(), l.Words("Group"), l.Choice("Join") == "any of", l.Words("Within")
 		if g.Name == "" {
 			continue
 		}
 		if first := ls.groups[key(g.Name)]; first != nil {
-			l.fault("Group", g.Name, duplicate, strconv.Itoa(first.At.Row), "group")
+			l.Fault("Group", g.Name, duplicate, strconv.Itoa(first.At.Row), "group")
 			first.line.suffer(l.because)
 			continue
 		}
@@ -211,23 +211,23 @@ func (ls *limits) checkGroups() {
 	for _, pg := range ls.plan.Groups {
 		g := ls.groups[key(pg.Name)]
 		if !ls.inLimits[key(g.Name)] && !held[key(g.Name)] {
-			g.line.fault("Group", g.Name, groupEmpty)
+			g.line.Fault("Group", g.Name, groupEmpty)
 		}
 		if g.Within == "" {
 			continue
 		}
 		if ls.groups[key(g.Within)] == nil && !ls.inLimits[key(g.Within)] {
-			g.line.fault("Within", g.Within, groupUnknown, ls.offer(g.Within, func() []string { return names(ls.plan.Groups, func(g rules.Group) string { return g.Name }) }))
+			g.line.Fault("Within", g.Within, groupUnknown, ls.offer(g.Within, func() []string { return names(ls.plan.Groups, func(g rules.Group) string { return g.Name }) }))
 			continue
 		}
 		path := []string{g.Within}
 		for o := ls.groups[key(g.Within)]; o != nil; o = ls.groups[key(o.Within)] {
 			if key(o.Name) == key(g.Name) {
-				g.line.fault("Within", g.Within, groupCycle, strings.Join(path, ", "))
+				g.line.Fault("Within", g.Within, groupCycle, strings.Join(path, ", "))
 				break
 			}
 			if len(path) > mostDeep {
-				g.line.fault("Within", g.Within, groupDeep, strconv.Itoa(mostDeep))
+				g.line.Fault("Within", g.Within, groupDeep, strconv.Itoa(mostDeep))
 				break
 			}
 			path = append(path, o.Within)
@@ -239,15 +239,15 @@ func (ls *limits) checkGroups() {
 const mostDeep = 50
 
 // read reads one row of Limits.
-func (ls *limits) read(l *line) {
-	lim := rules.Limit{At: l.ref(), Typed: map[string]string{}}
-	lim.Name = l.words("Limit")
+func (ls *limits) read(l *Line) {
+	lim := rules.Limit{At: l.Ref(), Typed: map[string]string{}}
+	lim.Name = l.Words("Limit")
 	if first := ls.seen[key(lim.Name)]; first > 0 && lim.Name != "" {
-		l.fault("Limit", lim.Name, duplicate, strconv.Itoa(first), "limit")
+		l.Fault("Limit", lim.Name, duplicate, strconv.Itoa(first), "limit")
 	} else {
-		ls.seen[key(lim.Name)] = l.row.n
+		ls.seen[key(lim.Name)] = l.row.N
 	}
-	if w := l.choice("Rule"); w != "" {
+	if w := l.Choice("Rule"); w != "" {
 		lim.Kind = rules.Named(w)
 	}
 	sc := ls.appliesTo(l, &lim)
@@ -257,17 +257,17 @@ func (ls *limits) read(l *line) {
 	lim.Clock = clockOf(l, &lim)
 	for _, s := range []*model.Stage{lim.Clock.Start, lim.Clock.End} {
 		if sc.nowhere(s) {
-			l.fault("Clock starts", l.entry("Clock starts").text, stageNowhere)
+			l.Fault("Clock starts", l.Entry("Clock starts").Text, stageNowhere)
 		}
 	}
 	choices(l, &lim)
 	words := ls.citation(l, &lim)
 	aside := l.aside
-	if name := l.words("Table"); name != "" {
+	if name := l.Words("Table"); name != "" {
 		if tt := ls.tables[key(name)]; tt == nil && len(ls.unread["Tables"]) > 0 {
 			l.suffer(ls.unread["Tables"])
 		} else if tt == nil {
-			l.fault("Table", name, tableUnknown, ls.offer(name, ls.tableNames))
+			l.Fault("Table", name, tableUnknown, ls.offer(name, ls.tableNames))
 		} else {
 			lim.Table = &tt.Table
 			l.suffer(tt.because)
@@ -285,9 +285,9 @@ func (ls *limits) read(l *line) {
 	}
 	if lim.Kind != nil {
 		needs(l, lim.Kind)
-		if l.sound() {
+		if l.Sound() {
 			for _, f := range lim.Faults() {
-				l.fault(f.Column, l.entry(f.Column).text, asFound, verb(f.Msg, l.filled(f.Column)), f.Hint)
+				l.Fault(f.Column, l.Entry(f.Column).Text, asFound, verb(f.Msg, l.Filled(f.Column)), f.Hint)
 			}
 		}
 	} else {
@@ -301,8 +301,8 @@ func (ls *limits) read(l *line) {
 		}
 	}
 	for h := range l.t.place {
-		if l.filled(h) && lim.Typed[h] == "" && !strings.HasPrefix(h, "?") {
-			lim.Typed[h] = l.entry(h).text
+		if l.Filled(h) && lim.Typed[h] == "" && !strings.HasPrefix(h, "?") {
+			lim.Typed[h] = l.Entry(h).Text
 		}
 	}
 	for k, v := range words {
@@ -318,7 +318,7 @@ func (ls *limits) read(l *line) {
 }
 
 // sure tells whether a column is the only one that its cells may have been meant for.
-func (l *line) sure(heading string) bool {
+func (l *Line) sure(heading string) bool {
 	h := l.t.place[heading]
 	return h != nil && len(h.faults) == 0
 }
@@ -350,8 +350,8 @@ func verb(msg string, quoted bool) string {
 }
 
 // appliesTo reads whom a limit is for; the scope of nobody is empty.
-func (ls *limits) appliesTo(l *line, lim *rules.Limit) *scope {
-	typed := l.words("Applies to")
+func (ls *limits) appliesTo(l *Line, lim *rules.Limit) *scope {
+	typed := l.Words("Applies to")
 	head, family, named := strings.Cut(typed, ":")
 	switch {
 	case typed == "" || ls.blind():
@@ -362,7 +362,7 @@ func (ls *limits) appliesTo(l *line, lim *rules.Limit) *scope {
 	case named && key(head) == "family":
 		ps := ls.families[key(family)]
 		if key(family) == "" || len(ps) == 0 {
-			l.fault("Applies to", typed, familyUnknown, ls.offer(family, ls.familyNames))
+			l.Fault("Applies to", typed, familyUnknown, ls.offer(family, ls.familyNames))
 			return ls.scope("", nil)
 		}
 		lim.Applies.Family = ps[0].Family
@@ -376,7 +376,7 @@ func (ls *limits) appliesTo(l *line, lim *rules.Limit) *scope {
 	if ps := ls.families[key(typed)]; len(ps) > 0 {
 		hint = "; did you mean family: " + ps[0].Family + "?"
 	}
-	l.fault("Applies to", typed, appliesUnknown, hint)
+	l.Fault("Applies to", typed, appliesUnknown, hint)
 	return ls.scope("", nil)
 }
 
@@ -390,8 +390,8 @@ func (ls *limits) familyNames() []string {
 }
 
 // stages reads a stage, several joined by +, or a pair.
-func (ls *limits) stages(l *line, lim *rules.Limit, sc *scope) {
-	typed := l.words("Stage")
+func (ls *limits) stages(l *Line, lim *rules.Limit, sc *scope) {
+	typed := l.Words("Stage")
 	if typed == "" {
 		if lim.Kind != nil && lim.Kind.Uses("Stage") && lim.Kind != rules.Delay && lim.Kind != rules.Duration {
 			l.note("Stage", "", "the whole chain", "blank: the whole chain is taken")
@@ -404,7 +404,7 @@ func (ls *limits) stages(l *line, lim *rules.Limit, sc *scope) {
 				return s
 			}
 		}
-		l.fault("Stage", typed, stageUnknown, meant(word, stageNames), strings.Join(stageNames, ", "))
+		l.Fault("Stage", typed, stageUnknown, meant(word, stageNames), strings.Join(stageNames, ", "))
 		return nil
 	}
 	first, second, pair := strings.Cut(typed, ">")
@@ -414,7 +414,7 @@ func (ls *limits) stages(l *line, lim *rules.Limit, sc *scope) {
 			lim.Stages, lim.Then = []*model.Stage{a}, b
 		}
 		if lim.Kind != nil && lim.Kind != rules.Delay {
-			l.fault("Stage", typed, noPair)
+			l.Fault("Stage", typed, noPair)
 		}
 	} else {
 		for _, w := range strings.Split(typed, "+") {
@@ -423,7 +423,7 @@ func (ls *limits) stages(l *line, lim *rules.Limit, sc *scope) {
 			}
 		}
 	}
-	if !l.sound() || len(lim.Stages) == 0 {
+	if !l.Sound() || len(lim.Stages) == 0 {
 		return
 	}
 	found := false
@@ -431,13 +431,13 @@ func (ls *limits) stages(l *line, lim *rules.Limit, sc *scope) {
 		found = found || !sc.nowhere(st)
 	}
 	if !found || sc.nowhere(lim.Then) {
-		l.fault("Stage", typed, stageNowhere)
+		l.Fault("Stage", typed, stageNowhere)
 	}
 }
 
 // where reads which places a limit is about.
-func (ls *limits) where(l *line, lim *rules.Limit, sc *scope) {
-	typed := l.words("Where")
+func (ls *limits) where(l *Line, lim *rules.Limit, sc *scope) {
+	typed := l.Words("Where")
 	if typed == "" {
 		lim.Where.Name = whereWords[0]
 		if lim.Kind != nil && lim.Kind.Uses("Where") {
@@ -459,7 +459,7 @@ func (ls *limits) where(l *line, lim *rules.Limit, sc *scope) {
 	case pt == nil && len(ls.unread["Points"]) > 0:
 		l.suffer(ls.unread["Points"])
 	case pt == nil:
-		l.fault("Where", typed, whereUnknown, ls.offer(typed, func() []string {
+		l.Fault("Where", typed, whereUnknown, ls.offer(typed, func() []string {
 			known := append([]string(nil), whereWords...)
 			for _, p := range sc.points {
 				known = append(known, p.name)
@@ -470,7 +470,7 @@ func (ls *limits) where(l *line, lim *rules.Limit, sc *scope) {
 	default:
 		lim.Where.Name = pt.name
 		if pt.n < len(sc.products) {
-			l.remark(cell.Warning, "Where", typed, whereLacking, sc.without(key(typed)))
+			l.Remark(cell.Warning, "Where", typed, whereLacking, sc.without(key(typed)))
 		}
 	}
 }
@@ -486,7 +486,7 @@ func (sc *scope) without(point string) string {
 }
 
 // numbers reads the columns of numbers, and keeps each as typed.
-func numbers(l *line, lim *rules.Limit) {
+func numbers(l *Line, lim *rules.Limit) {
 	for _, c := range []struct {
 		heading string
 		field   **float64
@@ -495,7 +495,7 @@ func numbers(l *line, lim *rules.Limit) {
 		{"Reference temperature", &lim.ReferenceC}, {"z", &lim.ZK}, {"z above the reference temperature", &lim.ZAboveK}, {"D", &lim.DS},
 		{"Log reductions", &lim.Logs}, {"Allowance", &lim.AllowanceK}, {"Humidity", &lim.HumidityPc}, {"Share of stage", &lim.SharePc},
 	} {
-		if v := l.value(c.heading); v != nil {
+		if v := l.Value(c.heading); v != nil {
 			*c.field = &v.Computed
 			lim.Typed[c.heading] = v.Typed
 		}
@@ -503,8 +503,8 @@ func numbers(l *line, lim *rules.Limit) {
 }
 
 // clockOf reads Clock starts.
-func clockOf(l *line, lim *rules.Limit) (c rules.Clock) {
-	typed := l.words("Clock starts")
+func clockOf(l *Line, lim *rules.Limit) (c rules.Clock) {
+	typed := l.Words("Clock starts")
 	if typed == "" {
 		return c
 	}
@@ -517,11 +517,11 @@ func clockOf(l *line, lim *rules.Limit) (c rules.Clock) {
 	case ofN:
 		v, m := unit.Temperature.Parse(at, nil, l.r.decimal)
 		if m != nil && !strings.ContainsAny(strings.ToUpper(at), "CFK") {
-			l.fault("Clock starts", typed, clockNoUnit)
+			l.Fault("Clock starts", typed, clockNoUnit)
 			return c
 		}
 		if m != nil {
-			l.fault("Clock starts", typed, asFound, "does not name a temperature: "+strconv.Quote(at)+" "+m.Says, m.Mend)
+			l.Fault("Clock starts", typed, asFound, "does not name a temperature: "+strconv.Quote(at)+" "+m.Says, m.Mend)
 			return c
 		}
 		c.Crossing, c.AtC = true, &v.Computed
@@ -533,7 +533,7 @@ func clockOf(l *line, lim *rules.Limit) (c rules.Clock) {
 			}
 		}
 		if stage == nil {
-			l.fault("Clock starts", typed, stageUnknown, meant(name, stageNames), strings.Join(stageNames, ", "))
+			l.Fault("Clock starts", typed, stageUnknown, meant(name, stageNames), strings.Join(stageNames, ", "))
 		}
 		if tidy(head) == "stage start" {
 			c.Start = stage
@@ -541,15 +541,15 @@ func clockOf(l *line, lim *rules.Limit) (c rules.Clock) {
 			c.End = stage
 		}
 	default:
-		l.fault("Clock starts", typed, clockUnknown)
+		l.Fault("Clock starts", typed, clockUnknown)
 	}
 	return c
 }
 
 // choices reads the columns that take one of a few words.
-func choices(l *line, lim *rules.Limit) {
+func choices(l *Line, lim *rules.Limit) {
 	index := func(heading string, words []string) int {
-		if w := l.choice(heading); w != "" {
+		if w := l.Choice(heading); w != "" {
 			for i := range words {
 				if words[i] == w {
 					return i + 1
@@ -562,19 +562,19 @@ func choices(l *line, lim *rules.Limit) {
 	lim.Compare = rules.Compare(index("Compare", compareWords))
 	lim.CompareTime = rules.Compare(index("Compare time", compareWords))
 	for _, h := range []string{"Compare", "Compare time"} {
-		if lim.Kind != nil && lim.Kind.Uses(h) && !l.filled(h) {
+		if lim.Kind != nil && lim.Kind.Uses(h) && !l.Filled(h) {
 			l.note(h, "", "as the rule "+lim.Kind.Name+" does", "blank: the rule's own comparison is taken")
 		}
 	}
-	lim.Advice = l.choice("Level") == "advice"
-	if !l.filled("Level") {
+	lim.Advice = l.Choice("Level") == "advice"
+	if !l.Filled("Level") {
 		l.note("Level", "", "must", "blank: must is taken")
 	}
-	lim.Status = l.choice("Status")
-	if e := l.entry("Answer"); e.kind == truth {
-		l.fault("Answer", e.text, isTruth, "yes, no, or words")
+	lim.Status = l.Choice("Status")
+	if e := l.Entry("Answer"); e.Kind == Truth {
+		l.Fault("Answer", e.Text, isTruth, "yes, no, or words")
 	} else {
-		lim.Answer = l.words("Answer")
+		lim.Answer = l.Words("Answer")
 	}
 }
 
@@ -582,7 +582,7 @@ var monthClause = regexp.MustCompile(`(?i)^\d{1,2}[-. ](jan|feb|mar|apr|may|jun|
 
 // citation reads where a limit comes from; what is missing, or what a spreadsheet seems to have changed, is a warning.
 // It returns what is to be printed where that is not the text of the cell.
-func (ls *limits) citation(l *line, lim *rules.Limit) map[string]string {
+func (ls *limits) citation(l *Line, lim *rules.Limit) map[string]string {
 	changed := map[string]string{}
 	for _, c := range []struct {
 		heading string
@@ -591,47 +591,47 @@ func (ls *limits) citation(l *line, lim *rules.Limit) map[string]string {
 		{"Group", &lim.Group}, {"CCP", &lim.CCP}, {"Hazard", &lim.Hazard}, {"Code", &lim.Code}, {"Clause", &lim.Clause}, {"Edition", &lim.Edition},
 		{"Issued by", &lim.IssuedBy}, {"Confirmed by", &lim.ConfirmedBy}, {"Confirmed on", &lim.ConfirmedOn}, {"Note", &lim.Note},
 	} {
-		*c.field = l.words(c.heading)
-		e := l.entry(c.heading)
-		if *c.field != e.text {
+		*c.field = l.Words(c.heading)
+		e := l.Entry(c.heading)
+		if *c.field != e.Text {
 			changed[c.heading] = *c.field
 		}
 		if c.heading != "Clause" && c.heading != "Edition" {
 			continue
 		}
 		switch {
-		case e.kind == figure && e.form == date, e.kind == text && l.t.grid.csv && monthClause.MatchString(e.text):
-			l.remark(cell.Warning, c.heading, *c.field, clauseDate, strings.ToLower(c.heading))
-		case e.kind == figure && (strings.ContainsAny(e.text, ".eE") || e.form != bare && e.form < worded):
-			l.remark(cell.Warning, c.heading, *c.field, clauseDecimal, strings.ToLower(c.heading))
+		case e.Kind == Figure && e.Form == Date, e.Kind == Text && l.t.grid.CSV && monthClause.MatchString(e.Text):
+			l.Remark(cell.Warning, c.heading, *c.field, clauseDate, strings.ToLower(c.heading))
+		case e.Kind == Figure && (strings.ContainsAny(e.Text, ".eE") || e.Form != Bare && e.Form < Worded):
+			l.Remark(cell.Warning, c.heading, *c.field, clauseDecimal, strings.ToLower(c.heading))
 		}
 	}
 	var lack []string
 	for _, h := range []string{"Code", "Clause", "Edition"} {
-		if !l.filled(h) {
+		if !l.Filled(h) {
 			lack = append(lack, h)
 		}
 	}
 	if len(lack) > 0 {
-		l.remark(cell.Warning, lack[0], "", noCitation, and(lack), isAre(len(lack)))
+		l.Remark(cell.Warning, lack[0], "", noCitation, and(lack), isAre(len(lack)))
 	}
 	return changed
 }
 
 // needs holds the filled columns against those that the kind needs and may have.
-func needs(l *line, k *rules.Kind) {
+func needs(l *Line, k *rules.Kind) {
 	for _, any := range k.Needs {
 		filled := false
 		for _, h := range any {
-			filled = filled || l.filled(h)
+			filled = filled || l.Filled(h)
 		}
 		if !filled {
-			l.fault(any[0], "", limitNeeds, or(any), k.Name, or(any))
+			l.Fault(any[0], "", limitNeeds, or(any), k.Name, or(any))
 		}
 	}
 	for _, c := range l.t.sheet.Columns {
-		if l.filled(c.Heading) && !k.Uses(c.Heading) {
-			l.fault(c.Heading, l.entry(c.Heading).text, limitUnused, k.Name, c.Heading)
+		if l.Filled(c.Heading) && !k.Uses(c.Heading) {
+			l.Fault(c.Heading, l.Entry(c.Heading).Text, limitUnused, k.Name, c.Heading)
 		}
 	}
 }

@@ -11,7 +11,7 @@ import (
 // product is a row of Products while the plan is read.
 type product struct {
 	Product
-	line    *line
+	line    *Line
 	food    *food
 	own     map[string]*step   // rows of Steps that name it, by step
 	faces   map[string][]*face // rows of Faces that name it, by step
@@ -48,19 +48,19 @@ func (r *reader) readProducts() {
 	}
 	for _, l := range t.lines {
 		p := &product{line: l}
-		p.At = l.ref()
-		p.Name = l.words("Product")
+		p.At = l.Ref()
+		p.Name = l.Words("Product")
 		if first := r.byName[key(p.Name)]; p.Name != "" && first != nil {
-			l.fault("Product", p.Name, duplicate, strconv.Itoa(first.At.Row), "product")
+			l.Fault("Product", p.Name, duplicate, strconv.Itoa(first.At.Row), "product")
 		}
-		p.Family, p.RecipeVersion, p.Batch = l.words("Family"), l.words("Recipe version"), l.words("Batch")
-		p.Process = l.words("Process")
+		p.Family, p.RecipeVersion, p.Batch = l.Words("Family"), l.Words("Recipe version"), l.Words("Batch")
+		p.Process = l.Words("Process")
 		p.size(l)
 		r.productFood(p, l)
-		if v := l.number("Start temperature"); v != nil {
+		if v := l.Number("Start temperature"); v != nil {
 			p.StartC = *v
 		}
-		p.Note = l.words("Note")
+		p.Note = l.Words("Note")
 		p.because = l.because
 		r.products = append(r.products, p)
 		r.users[key(p.Process)] = append(r.users[key(p.Process)], p)
@@ -72,8 +72,8 @@ func (r *reader) readProducts() {
 }
 
 // size reads the shape and the sizes that it uses.
-func (p *product) size(l *line) {
-	if w := l.choice("Shape"); w != "" {
+func (p *product) size(l *Line) {
+	if w := l.Choice("Shape"); w != "" {
 		for _, s := range model.Shapes {
 			if s.Name == w {
 				p.Shape = s
@@ -88,16 +88,16 @@ func (p *product) size(l *line) {
 			}
 		}
 		switch {
-		case !used && l.filled(z.heading):
+		case !used && l.Filled(z.heading):
 			needs := and(p.Shape.Needs)
 			if needs == "" {
 				needs = "no size of its own"
 			}
-			l.fault(z.heading, l.entry(z.heading).text, sizeUnused, strings.ToLower(z.heading), p.Shape.Name, needs)
-		case used && p.Shape != nil && !l.filled(z.heading):
-			l.fault(z.heading, "", sizeMissing, z.heading, p.Shape.Name, and(p.Shape.Needs))
+			l.Fault(z.heading, l.Entry(z.heading).Text, sizeUnused, strings.ToLower(z.heading), p.Shape.Name, needs)
+		case used && p.Shape != nil && !l.Filled(z.heading):
+			l.Fault(z.heading, "", sizeMissing, z.heading, p.Shape.Name, and(p.Shape.Needs))
 		case used:
-			if v := l.value(z.heading); v != nil {
+			if v := l.Value(z.heading); v != nil {
 				*z.field(&p.Size) = v.Computed
 				p.Inches = p.Inches || inches(v.Typed)
 			}
@@ -111,19 +111,19 @@ func inches(typed string) bool {
 }
 
 // productFood finds the food of a product.
-func (r *reader) productFood(p *product, l *line) {
+func (r *reader) productFood(p *product, l *Line) {
 	layered := p.Shape == model.LayeredSlab
-	name := l.words("Food")
+	name := l.Words("Food")
 	switch {
 	case layered && name != "":
-		l.fault("Food", name, foodForLayers)
-	case layered || !l.sound() && name == "" && l.filled("Food"):
+		l.Fault("Food", name, foodForLayers)
+	case layered || !l.Sound() && name == "" && l.Filled("Food"):
 	case name == "":
-		l.fault("Food", "", foodMissing)
+		l.Fault("Food", "", foodMissing)
 	default:
 		f := r.foodNamed(name)
 		if f == nil {
-			l.fault("Food", name, foodUnknown, r.foodsLike(name))
+			l.Fault("Food", name, foodUnknown, r.foodsLike(name))
 			return
 		}
 		p.food, p.Food = f, f.material
@@ -138,38 +138,38 @@ func (r *reader) readPoints() {
 		return
 	}
 	for _, l := range t.lines {
-		owner, name := l.words("Product"), l.words("Point")
-		pt := model.Point{At: l.ref(), Name: name}
+		owner, name := l.Words("Product"), l.Words("Point")
+		pt := model.Point{At: l.Ref(), Name: name}
 		for _, axis := range []struct {
 			heading string
 			field   *float64
 		}{{"Up", &pt.UpM}, {"Across", &pt.AcrossM}, {"Along", &pt.AlongM}} {
-			if v := l.number(axis.heading); v != nil {
+			if v := l.Number(axis.heading); v != nil {
 				*axis.field = *v
-			} else if !l.filled(axis.heading) {
+			} else if !l.Filled(axis.heading) {
 				l.note(axis.heading, "", "0 m", "blank: 0 is taken")
 			}
 		}
 		p := r.byName[key(owner)]
 		if p == nil {
 			if owner != "" && !r.blind() {
-				l.fault("Product", owner, productUnknown, r.offer(owner, r.productNames))
+				l.Fault("Product", owner, productUnknown, r.offer(owner, r.productNames))
 			}
 			continue
 		}
 		builtIn := key(name) == "centre"
 		switch {
 		case builtIn && pt.Place != (model.Place{}):
-			l.fault("Point", name, pointCentre)
+			l.Fault("Point", name, pointCentre)
 		case p.points[key(name)] > 0:
-			l.fault("Point", name, pointTwice, strconv.Itoa(p.points[key(name)]))
+			l.Fault("Point", name, pointTwice, strconv.Itoa(p.points[key(name)]))
 		case p.Shape == model.Stirred && !builtIn:
-			l.fault("Point", name, pointStirred)
+			l.Fault("Point", name, pointStirred)
 		}
 		if p.points == nil {
 			p.points = map[string]int{}
 		}
-		p.points[key(name)] = l.row.n
+		p.points[key(name)] = l.row.N
 		if !builtIn {
 			p.Points = append(p.Points, pt)
 		}

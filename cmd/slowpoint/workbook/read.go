@@ -30,7 +30,7 @@ func Read(name string) (*Plan, error) {
 	if !info.IsDir() && !info.Mode().IsRegular() {
 		return nil, fmt.Errorf("%s: it is neither a file nor a folder", name)
 	}
-	var grids []*grid
+	var grids []*Grid
 	digest := ""
 	if info.IsDir() {
 		if grids, digest, err = readFolder(name); err != nil {
@@ -61,7 +61,7 @@ func Read(name string) (*Plan, error) {
 type reader struct {
 	plan     *Plan
 	tables   map[string]*table // by the name in Sheets
-	grids    map[string]*grid
+	grids    map[string]*Grid
 	unread   map[string]cell.Errors // why a sheet, or a part of it, could not be read
 	ignore   map[string]bool        // headings of the item Ignore columns, by key
 	decimal  unit.Decimal
@@ -115,30 +115,30 @@ func (f *formulas) count(at cell.Ref) {
 }
 
 // sheets sorts the grids out: which sheet of a plan each is, and which decimal sign the whole file shows.
-func (r *reader) sheets(grids []*grid) error {
-	r.grids, r.tables, r.ignore = map[string]*grid{}, map[string]*table{}, map[string]bool{}
-	inOrder := append([]*grid(nil), grids...)
+func (r *reader) sheets(grids []*Grid) error {
+	r.grids, r.tables, r.ignore = map[string]*Grid{}, map[string]*table{}, map[string]bool{}
+	inOrder := append([]*Grid(nil), grids...)
 	sort.SliceStable(inOrder, func(i, j int) bool { // files have no order of their own
-		return grids[0].csv && rank(inOrder[i].name) < rank(inOrder[j].name)
+		return grids[0].CSV && rank(inOrder[i].Name) < rank(inOrder[j].Name)
 	})
 	for _, g := range inOrder {
-		r.plan.Sheets = append(r.plan.Sheets, g.name)
+		r.plan.Sheets = append(r.plan.Sheets, g.Name)
 	}
 	known := names(Sheets, func(s *Sheet) string { return s.Name })
 	for _, g := range grids {
-		s := sheetOf(g.name)
-		at := cell.Ref{Sheet: g.name}
+		s := sheetOf(g.Name)
+		at := cell.Ref{Sheet: g.Name}
 		switch {
-		case g.hidden:
-			r.add(hiddenSheet.problem(at, cell.Warning, "", g.name))
+		case g.Hidden:
+			r.add(hiddenSheet.problem(at, cell.Warning, "", g.Name))
 		case s == nil:
 			hint := "the sheets of a plan are " + and(known)
-			if n := nearest(g.name, known); n != "" {
+			if n := nearest(g.Name, known); n != "" {
 				hint = "did you mean " + n + "?"
 			}
-			r.add(unknownSheet.problem(at, cell.Warning, "", g.name, hint))
+			r.add(unknownSheet.problem(at, cell.Warning, "", g.Name, hint))
 		case r.grids[s.Name] != nil:
-			e := doubledSheet.problem(at, cell.Fault, "", g.name, r.grids[s.Name].name, g.name)
+			e := doubledSheet.problem(at, cell.Fault, "", g.Name, r.grids[s.Name].Name, g.Name)
 			r.add(e)
 			r.unread[s.Name] = append(r.unread[s.Name], e)
 		default:
@@ -215,7 +215,7 @@ func (r *reader) finish() {
 		r.add(bareWrap.problem(w.first, cell.Note, "", model.TightWrap.Name, more))
 	}
 	if len(r.products) == 0 && len(r.unread["Products"]) == 0 {
-		r.add(noProducts.problem(cell.Ref{Sheet: r.grids["Products"].name}, cell.Fault, "", ""))
+		r.add(noProducts.problem(cell.Ref{Sheet: r.grids["Products"].Name}, cell.Fault, "", ""))
 	}
 	for _, p := range r.products {
 		if len(p.because) == 0 {
@@ -264,31 +264,31 @@ func (r *reader) planItems() {
 	}
 	seen := map[string]int{}
 	for _, l := range t.lines {
-		item := l.words("Item")
+		item := l.Words("Item")
 		if item == "" {
 			continue
 		}
 		known := ""
 		for _, i := range PlanItems {
-			name, _ := splitHeading(i)
-			typed, _ := splitHeading(item)
+			name, _ := SplitHeading(i)
+			typed, _ := SplitHeading(item)
 			if key(name) == key(typed) {
 				known = i
 			}
 		}
 		if known == "" {
-			l.fault("Item", item, unknownItem, meant(item, PlanItems), strings.Join(PlanItems, ", "))
+			l.Fault("Item", item, unknownItem, meant(item, PlanItems), strings.Join(PlanItems, ", "))
 			r.ofAll(l, nearest(item, PlanItems))
 			continue
 		}
 		if first := seen[known]; first > 0 {
-			l.fault("Item", item, duplicate, strconv.Itoa(first), "item")
+			l.Fault("Item", item, duplicate, strconv.Itoa(first), "item")
 			r.ofAll(l, known)
 			continue
 		}
-		seen[known] = l.row.n
-		value := l.words("Value")
-		r.plan.Items = append(r.plan.Items, Item{At: l.at("Value"), Item: item, Value: value})
+		seen[known] = l.row.N
+		value := l.Words("Value")
+		r.plan.Items = append(r.plan.Items, Item{At: l.At("Value"), Item: item, Value: value})
 		if value != "" {
 			r.planItem(l, known, item, value)
 		}
@@ -302,29 +302,29 @@ func (r *reader) planItems() {
 const altitude = "Altitude (m)"
 
 // ofAll refuses all products for the faults of an item that all of them are calculated or read with.
-func (r *reader) ofAll(l *line, item string) {
+func (r *reader) ofAll(l *Line, item string) {
 	if item == altitude || item == "Decimal sign" {
 		r.unread["Plan"] = append(r.unread["Plan"], l.because...)
 	}
 }
 
 // planItem uses the items that change how the plan is read or shown.
-func (r *reader) planItem(l *line, known, item, value string) {
+func (r *reader) planItem(l *Line, known, item, value string) {
 	choice := func() string {
 		for _, c := range planChoices[known] {
 			if key(c) == key(value) {
 				return c
 			}
 		}
-		l.fault("Value", value, notAnAnswer, known, strings.Join(planChoices[known], ", "))
+		l.Fault("Value", value, notAnAnswer, known, strings.Join(planChoices[known], ", "))
 		return ""
 	}
 	switch known {
 	case altitude:
-		_, inside := splitHeading(item)
+		_, inside := SplitHeading(item)
 		v, m := unit.Length.Parse(value, unit.Length.Unit(inside), unit.Point)
 		if m != nil || v.Computed < -500 || v.Computed > 6000 {
-			l.fault("Value", value, notAltitude)
+			l.Fault("Value", value, notAltitude)
 		} else {
 			r.plan.AltitudeM = v.Computed
 		}
@@ -356,7 +356,7 @@ func (r *reader) decimalSign() {
 	var typed [3]string
 	for _, s := range Sheets {
 		g := r.grids[s.Name]
-		if g == nil || g.refused != "" {
+		if g == nil || g.Refused != "" {
 			continue
 		}
 		i, _ := findHeader(g, s)
@@ -364,18 +364,18 @@ func (r *reader) decimalSign() {
 			continue
 		}
 		numbers := map[int32]bool{}
-		for _, h := range headings(s, &g.rows[i]) {
+		for _, h := range headings(s, &g.Rows[i]) {
 			if h.column.Quantity != nil {
 				numbers[int32(h.col)] = true
 			}
 		}
-		for _, row := range g.rows[i+1:] {
-			for _, e := range row.cells {
-				if e.kind != text || !numbers[e.col] || !strings.ContainsAny(e.text, ".,") {
+		for _, row := range g.Rows[i+1:] {
+			for _, e := range row.Cells {
+				if e.Kind != Text || !numbers[e.Col] || !strings.ContainsAny(e.Text, ".,") {
 					continue
 				}
-				if d := unit.Evidence(e.text); d != unit.Unsure && first[d].Row == 0 {
-					first[d], typed[d] = cell.Ref{Sheet: g.name, Row: row.n, Col: int(e.col)}, e.text
+				if d := unit.Evidence(e.Text); d != unit.Unsure && first[d].Row == 0 {
+					first[d], typed[d] = cell.Ref{Sheet: g.Name, Row: row.N, Col: int(e.Col)}, e.Text
 				}
 			}
 		}
@@ -402,36 +402,36 @@ func (r *reader) notYet() {
 			var concerned []*product
 			switch s.Name {
 			case "Layers":
-				name := l.words("Product")
+				name := l.Words("Product")
 				p := r.byName[key(name)]
 				if p == nil {
 					if name != "" && !r.blind() {
-						l.fault("Product", name, productUnknown, r.offer(name, r.productNames))
+						l.Fault("Product", name, productUnknown, r.offer(name, r.productNames))
 					}
 					continue
 				}
 				if p.Shape != nil && p.Shape != model.LayeredSlab {
-					l.fault("Product", name, layersOfOther, p.Shape.Name)
+					l.Fault("Product", name, layersOfOther, p.Shape.Name)
 				}
-				l.words("Food")
-				l.number("Layer")
-				l.number("Thickness")
-				l.number("Contact resistance below")
+				l.Words("Food")
+				l.Number("Layer")
+				l.Number("Thickness")
+				l.Number("Contact resistance below")
 				p.suffer(l.because)
 				continue // the shape itself is refused
 			case "Spread":
 				concerned = r.products
 				if i < 200 {
-					concerned = r.matching(l.words("Applies to"), "")
+					concerned = r.matching(l.Words("Applies to"), "")
 				}
 			case "Records":
 				concerned = r.products
 				if i < 200 {
-					concerned = r.matching(l.words("Product"), l.words("Process"))
+					concerned = r.matching(l.Words("Product"), l.Words("Process"))
 				}
 			}
 			first := s.Columns[0].Heading
-			l.fault(first, l.entry(first).text, sheetNotYet, s.Refused)
+			l.Fault(first, l.Entry(first).Text, sheetNotYet, s.Refused)
 			for _, p := range concerned {
 				p.suffer(l.because)
 			}

@@ -334,7 +334,7 @@ func TestColumns(t *testing.T) {
 				t.Errorf("%s: unit of %s", s.Name, c.Title())
 			}
 			seen[key(c.Heading)] = true
-			if name, _ := splitHeading(c.Title()); name != c.Heading {
+			if name, _ := SplitHeading(c.Title()); name != c.Heading {
 				t.Errorf("%s: %q comes back as %q", s.Name, c.Title(), name)
 			}
 		}
@@ -366,10 +366,10 @@ func TestColumns(t *testing.T) {
 
 // TestNumberFormats: what a number format makes of a number (ECMA-376 part 1, 18.8.30 and 18.8.31).
 func TestNumberFormats(t *testing.T) {
-	for code, want := range map[string]form{
-		"General": bare, "0.00": bare, "#,##0.0": bare, `0.0" °C"`: bare, `0 \s`: bare, `"day "0`: bare, ";;;": bare, "[Red]0.0": bare, `# ?/?`: bare,
-		"0%": percent, "0.00%": percent, "h:mm": clock, "[h]:mm": clock, "[mm]:ss": clock, "mm:ss.0": clock, "h:mm AM/PM": clock, "[$-F400]h:mm:ss": clock,
-		"yyyy-mm-dd": date, "d-mmm": date, "mmm-yy": date, "m/d/yy h:mm": date, "[$-407]dd.mm.yyyy": date, "mmmm": date,
+	for code, want := range map[string]Form{
+		"General": Bare, "0.00": Bare, "#,##0.0": Bare, `0.0" °C"`: Bare, `0 \s`: Bare, `"day "0`: Bare, ";;;": Bare, "[Red]0.0": Bare, `# ?/?`: Bare,
+		"0%": Percent, "0.00%": Percent, "h:mm": Clock, "[h]:mm": Clock, "[mm]:ss": Clock, "mm:ss.0": Clock, "h:mm AM/PM": Clock, "[$-F400]h:mm:ss": Clock,
+		"yyyy-mm-dd": Date, "d-mmm": Date, "mmm-yy": Date, "m/d/yy h:mm": Date, "[$-407]dd.mm.yyyy": Date, "mmmm": Date,
 	} {
 		if got := formOf(code); got != want {
 			t.Errorf("%q: %v, want %v", code, got, want)
@@ -491,8 +491,8 @@ func TestLyingSize(t *testing.T) {
 func TestRowNumbers(t *testing.T) {
 	g := csvGrid("Points", []byte("\xef\xbb\xbfProduct,Point\r\n\r\n\"a\nb\",p\r\n,,\r\nc,\"x\r\ny\"\r\nd,q\r\n"))
 	var got []string
-	for _, r := range g.rows {
-		got = append(got, fmt.Sprintf("%d %s", r.n, r.cells[0].text))
+	for _, r := range g.Rows {
+		got = append(got, fmt.Sprintf("%d %s", r.N, r.Cells[0].Text))
 	}
 	if want := "1 Product; 3 a b; 5 c; 6 d"; strings.Join(got, "; ") != want {
 		t.Errorf("%s, want %s", strings.Join(got, "; "), want)
@@ -507,8 +507,8 @@ func TestDelimiters(t *testing.T) {
 		"tab":       "Product\tPoint\tUp (mm)\nBlock\tprobe, left\t10\n",
 	} {
 		g := csvGrid("Points", []byte(text))
-		if len(g.rows) != 2 || len(g.rows[1].cells) < 3 || g.rows[1].cells[0].text != "Block" {
-			t.Errorf("%s: %v %s", name, g.rows, g.refused)
+		if len(g.Rows) != 2 || len(g.Rows[1].Cells) < 3 || g.Rows[1].Cells[0].Text != "Block" {
+			t.Errorf("%s: %v %s", name, g.Rows, g.Refused)
 		}
 	}
 }
@@ -534,12 +534,12 @@ func TestCells(t *testing.T) {
 		{"beyond the rows", `<row r="1048577"></row>`, "ERR does not exist"},
 	} {
 		t.Run(c.name, func(t *testing.T) {
-			b, g, left := &book{}, &grid{hiddenC: map[int]bool{}}, 100
+			b, g, left := &book{}, &Grid{HiddenCols: map[int]bool{}}, 100
 			err := b.sheet(strings.NewReader(head+c.xml+"</sheetData></worksheet>"), g, &left)
 			var out []string
-			for _, r := range g.rows {
-				for _, e := range r.cells {
-					out = append(out, fmt.Sprintf("%s%d %s %s", cell.ColumnName(int(e.col)), r.n, [...]string{"blank", "text", "figure", "truth", "broken", "none"}[e.kind], e.text))
+			for _, r := range g.Rows {
+				for _, e := range r.Cells {
+					out = append(out, fmt.Sprintf("%s%d %s %s", cell.ColumnName(int(e.Col)), r.N, [...]string{"blank", "text", "figure", "truth", "broken", "none"}[e.Kind], e.Text))
 				}
 			}
 			got := strings.Join(out, "; ")
@@ -574,9 +574,9 @@ func FuzzGuard(f *testing.F) {
 			t.Fatal("an error without words")
 		}
 		for _, g := range grids {
-			for i, r := range g.rows {
-				if i > 0 && r.n <= g.rows[i-1].n || len(r.cells) == 0 {
-					t.Fatalf("row %d", r.n)
+			for i, r := range g.Rows {
+				if i > 0 && r.N <= g.Rows[i-1].N || len(r.Cells) == 0 {
+					t.Fatalf("row %d", r.N)
 				}
 			}
 		}
@@ -588,9 +588,9 @@ func FuzzSheet(f *testing.F) {
 	f.Add(`<worksheet><sheetData><row r="1"><c r="A1" t="s"><v>0</v></c><c r="B1" t="inlineStr"><is><t>x</t></is></c></row></sheetData><mergeCells><mergeCell ref="A1:B2"/></mergeCells></worksheet>`)
 	f.Add(`<worksheet><cols><col min="1" max="3" hidden="1"/></cols><sheetData><row hidden="1"><c><f>1</f></c></row></sheetData></worksheet>`)
 	f.Fuzz(func(t *testing.T, s string) {
-		b, g, left := &book{strings: []string{"Product"}, forms: []form{bare, clock}}, &grid{name: "Products", hiddenC: map[int]bool{}}, 1000
+		b, g, left := &book{strings: []string{"Product"}, forms: []Form{Bare, Clock}}, &Grid{Name: "Products", HiddenCols: map[int]bool{}}, 1000
 		if b.sheet(strings.NewReader(s), g, &left) == nil {
-			understand([]*grid{g}, &Plan{})
+			understand([]*Grid{g}, &Plan{})
 		}
 	})
 }
@@ -601,7 +601,7 @@ func FuzzCSV(f *testing.F) {
 	f.Add("\"Product\";Process\n", "Process\tStep\n\"")
 	f.Add("\xff\xfeP", "")
 	f.Fuzz(func(t *testing.T, products, steps string) {
-		grids := []*grid{csvGrid("Products", []byte(products)), csvGrid("Steps", []byte(steps)), csvGrid("Limits", []byte(steps)), csvGrid("Plan", []byte(products))}
+		grids := []*Grid{csvGrid("Products", []byte(products)), csvGrid("Steps", []byte(steps)), csvGrid("Limits", []byte(steps)), csvGrid("Plan", []byte(products))}
 		plan, err := understand(grids, &Plan{})
 		if err != nil {
 			t.Fatal(err)

@@ -20,7 +20,7 @@ type process struct {
 // step is a row of Steps.
 type step struct {
 	model.Step
-	line   *line
+	line   *Line
 	course *course
 	faces  []*face // of all products
 }
@@ -34,7 +34,7 @@ func (r *reader) readSteps() {
 	}
 	users := r.users
 	for i, l := range t.lines {
-		procName, prodName := l.words("Process"), l.words("Product")
+		procName, prodName := l.Words("Process"), l.Words("Product")
 		s := r.readStep(l)
 		if procName == "" {
 			r.orphan(t, i, users)
@@ -48,7 +48,7 @@ func (r *reader) readSteps() {
 			if near != "" {
 				offer = "; did you mean " + near + "?"
 			}
-			l.fault("Process", procName, processUnused, offer)
+			l.Fault("Process", procName, processUnused, offer)
 			switch {
 			case near != "": // a misspelt row would be missing from its chain
 				for _, p := range users[key(near)] {
@@ -64,12 +64,12 @@ func (r *reader) readSteps() {
 			continue
 		}
 		if first := pr.by[k]; first != nil && s.Name != "" {
-			l.fault("Step", s.Name, stepTwice, procName, strconv.Itoa(first.At.Row))
+			l.Fault("Step", s.Name, stepTwice, procName, strconv.Itoa(first.At.Row))
 		} else {
 			pr.by[k] = s
 		}
 		if len(pr.steps) == mostSteps {
-			l.fault("Process", procName, tooManySteps, strconv.Itoa(mostSteps))
+			l.Fault("Process", procName, tooManySteps, strconv.Itoa(mostSteps))
 			pr.steps[0].line.suffer(l.because)
 		}
 		if len(pr.steps) < mostSteps {
@@ -80,7 +80,7 @@ func (r *reader) readSteps() {
 		p.suffer(r.unread["Steps"])
 	}
 	for _, l := range t.lines {
-		l.row.cells = nil // everything has been read; this is most of a large plan
+		l.row.Cells = nil // everything has been read; this is most of a large plan
 	}
 }
 
@@ -110,8 +110,8 @@ func (r *reader) orphan(t *table, i int, users map[string][]*product) {
 	h := t.place["Process"]
 	for _, way := range []int{-1, 1} {
 		for j := i + way; j >= 0 && j < len(t.lines) && (j-i)*way <= 100; j += way {
-			if e := t.lines[j].row.at(h.col); e.kind != blank {
-				for _, p := range users[key(e.text)] {
+			if e := t.lines[j].row.at(h.col); e.Kind != Blank {
+				for _, p := range users[key(e.Text)] {
 					p.suffer(t.lines[i].because)
 				}
 				break
@@ -121,26 +121,26 @@ func (r *reader) orphan(t *table, i int, users map[string][]*product) {
 }
 
 // productOf finds the product that a row of a process names, and says so where there is none or where it goes through another process.
-func (r *reader) productOf(l *line, pr *process, name string) *product {
+func (r *reader) productOf(l *Line, pr *process, name string) *product {
 	p := r.byName[key(name)]
 	switch {
 	case p == nil:
-		l.fault("Product", name, productUnknown, r.offer(name, r.productNames))
+		l.Fault("Product", name, productUnknown, r.offer(name, r.productNames))
 		r.concern(pr, "", l.because) // whose row it is is not known: without it any product of the process may be wrong
 	case key(p.Process) != key(pr.name):
-		l.fault("Product", name, otherProcess, strconv.Quote(p.Process))
+		l.Fault("Product", name, otherProcess, strconv.Quote(p.Process))
 	}
 	return p
 }
 
 // stepOfProduct keeps a row that replaces a step for one product.
-func (r *reader) stepOfProduct(l *line, pr *process, s *step, name string) {
+func (r *reader) stepOfProduct(l *Line, pr *process, s *step, name string) {
 	p := r.productOf(l, pr, name)
 	if p == nil {
 		return
 	}
 	if first := p.own[key(s.Name)]; first != nil && key(p.Process) == key(pr.name) {
-		l.fault("Step", s.Name, stepTwice, pr.name+" for this product", strconv.Itoa(first.At.Row))
+		l.Fault("Step", s.Name, stepTwice, pr.name+" for this product", strconv.Itoa(first.At.Row))
 	}
 	if p.own == nil {
 		p.own = map[string]*step{}
@@ -150,16 +150,16 @@ func (r *reader) stepOfProduct(l *line, pr *process, s *step, name string) {
 }
 
 // readStep reads one row of Steps.
-func (r *reader) readStep(l *line) *step {
+func (r *reader) readStep(l *Line) *step {
 	s := &step{line: l}
-	s.Name = l.words("Step")
+	s.Name = l.Words("Step")
 	s.Stage = l.stage("Stage")
-	if v := l.number("Duration"); v != nil {
+	if v := l.Number("Duration"); v != nil {
 		s.DurationS = *v
 	}
-	s.UntilC = l.number("Until slowest point reaches")
+	s.UntilC = l.Number("Until slowest point reaches")
 	s.course = r.exposure(l, &s.Exposure, s.DurationS)
-	s.Equipment, s.Load, s.Note = l.words("Equipment"), l.words("Load"), l.words("Note")
+	s.Equipment, s.Load, s.Note = l.Words("Equipment"), l.Words("Load"), l.Words("Note")
 	if s.Equipment != "" {
 		l.refused("Equipment", s.Equipment)
 	}
@@ -168,23 +168,23 @@ func (r *reader) readStep(l *line) *step {
 }
 
 // stage reads the word of one stage.
-func (l *line) stage(heading string) *model.Stage {
-	e := l.entry(heading)
+func (l *Line) stage(heading string) *model.Stage {
+	e := l.Entry(heading)
 	for _, s := range model.Stages {
-		if e.kind == text && (key(e.text) == key(s.Name) || s.Also != "" && key(e.text) == key(s.Also)) {
-			l.note(heading, e.text, s.Name, "")
+		if e.Kind == Text && (key(e.Text) == key(s.Name) || s.Also != "" && key(e.Text) == key(s.Also)) {
+			l.note(heading, e.Text, s.Name, "")
 			return s
 		}
 	}
-	if e.kind == text && l.refused(heading, e.text) {
+	if e.Kind == Text && l.refused(heading, e.Text) {
 		return nil
 	}
-	l.choice(heading) // tells what is wrong
+	l.Choice(heading) // tells what is wrong
 	return nil
 }
 
 // refused tells whether a word names a process that conduction does not describe, and says so.
-func (l *line) refused(heading, typed string) bool {
+func (l *Line) refused(heading, typed string) bool {
 	words := strings.FieldsFunc(key(typed), func(c rune) bool { return !('a' <= c && c <= 'z') })
 	said := " " + strings.Join(words, " ") + " "
 	for _, no := range model.Refusals {
@@ -197,7 +197,7 @@ func (l *line) refused(heading, typed string) bool {
 			if len(rest) > 0 && harmless[rest[0]] || !strings.HasPrefix(said[i+1+len(w):], " ") && !strings.HasPrefix(said[i+1+len(w):], "s ") && !strings.HasPrefix(said[i+1+len(w):], "d ") {
 				continue
 			}
-			l.fault(heading, typed, processRefused, no.Why, no.Instead)
+			l.Fault(heading, typed, processRefused, no.Why, no.Instead)
 			return true
 		}
 	}
@@ -210,11 +210,11 @@ var harmless = map[string]bool{"bag": true, "bags": true, "pack": true, "packs":
 	"sealed": true, "sealer": true, "wrapped": true, "tray": true, "trays": true, "sheet": true, "sheets": true, "paper": true, "tin": true, "tins": true, "dish": true, "parchment": true}
 
 // exposure reads the surroundings columns of Steps or Faces. The course is nil if none is named or it is not known.
-func (r *reader) exposure(l *line, x *model.Exposure, durationS float64) *course {
-	x.At = l.ref()
-	e := l.entry("Surroundings")
-	if e.kind != text || !l.refused("Surroundings", e.text) {
-		if w := l.choice("Surroundings"); w != "" {
+func (r *reader) exposure(l *Line, x *model.Exposure, durationS float64) *course {
+	x.At = l.Ref()
+	e := l.Entry("Surroundings")
+	if e.Kind != Text || !l.refused("Surroundings", e.Text) {
+		if w := l.Choice("Surroundings"); w != "" {
 			for _, s := range model.Surfaces {
 				if s.Name == w {
 					x.Surface = s
@@ -223,14 +223,14 @@ func (r *reader) exposure(l *line, x *model.Exposure, durationS float64) *course
 		}
 	}
 	c := r.medium(l, x, durationS)
-	x.FilmW, x.AirMS, x.RH = l.number("Film coefficient"), l.number("Air speed"), l.number("Relative humidity")
-	x.RadiatingC, x.Emissivity = l.number("Radiating temperature"), l.number("Emissivity")
-	x.WrapM2KW = l.number("Wrap resistance")
-	if w := l.choice("Surface"); w != "" {
+	x.FilmW, x.AirMS, x.RH = l.Number("Film coefficient"), l.Number("Air speed"), l.Number("Relative humidity")
+	x.RadiatingC, x.Emissivity = l.Number("Radiating temperature"), l.Number("Emissivity")
+	x.WrapM2KW = l.Number("Wrap resistance")
+	if w := l.Choice("Surface"); w != "" {
 		wet := w == "wet"
 		x.Wet = &wet
 	}
-	if w := l.choice("Cover"); w != "" {
+	if w := l.Choice("Cover"); w != "" {
 		for _, k := range model.Covers {
 			if k.Name == w {
 				x.Cover = k
@@ -244,25 +244,25 @@ func (r *reader) exposure(l *line, x *model.Exposure, durationS float64) *course
 }
 
 // medium reads Temperature or Course, and what kind of temperature it is.
-func (r *reader) medium(l *line, x *model.Exposure, durationS float64) *course {
-	typed, name := l.value("Temperature"), l.words("Course")
-	if !l.filled("Temperature is") {
+func (r *reader) medium(l *Line, x *model.Exposure, durationS float64) *course {
+	typed, name := l.Value("Temperature"), l.Words("Course")
+	if !l.Filled("Temperature is") {
 		if typed != nil || name != "" {
 			l.note("Temperature is", "", "set-point", "blank: a set-point is taken")
 		}
 	}
-	x.Measured = l.choice("Temperature is") == "measured"
+	x.Measured = l.Choice("Temperature is") == "measured"
 	if x.Surface != nil && x.Surface.NoMedium {
 		for _, h := range []string{"Temperature", "Course", "Temperature is"} {
-			if l.filled(h) {
-				l.fault(h, l.entry(h).text, mediumUnused, x.Surface.Name)
+			if l.Filled(h) {
+				l.Fault(h, l.Entry(h).Text, mediumUnused, x.Surface.Name)
 			}
 		}
 		return nil
 	}
 	switch {
-	case l.filled("Temperature") && l.filled("Course"):
-		l.fault("Course", name, bothMedia, l.entry("Temperature").text)
+	case l.Filled("Temperature") && l.Filled("Course"):
+		l.Fault("Course", name, bothMedia, l.Entry("Temperature").Text)
 	case typed != nil:
 		x.Medium = model.Course{TimesS: []float64{0}, C: []float64{typed.Computed}}
 	case name != "":
@@ -272,20 +272,20 @@ func (r *reader) medium(l *line, x *model.Exposure, durationS float64) *course {
 			return nil
 		}
 		if c == nil {
-			l.fault("Course", name, courseUnknown, r.offer(name, r.courseNames))
+			l.Fault("Course", name, courseUnknown, r.offer(name, r.courseNames))
 			return nil
 		}
 		l.suffer(c.because)
 		x.Medium = c.cut(l, durationS)
 		return c
-	case !l.filled("Temperature") && !l.filled("Course") && x.Surface != nil:
-		l.fault("Temperature", "", noMedium, x.Surface.Name)
+	case !l.Filled("Temperature") && !l.Filled("Course") && x.Surface != nil:
+		l.Fault("Temperature", "", noMedium, x.Surface.Name)
 	}
 	return nil
 }
 
 // fits holds the filled columns against what the surroundings need and may have.
-func fits(l *line, x *model.Exposure) {
+func fits(l *Line, x *model.Exposure) {
 	s := x.Surface
 	lists := func(list []string, h string) bool {
 		for _, n := range list {
@@ -296,30 +296,30 @@ func fits(l *line, x *model.Exposure) {
 		return false
 	}
 	for _, h := range []string{"Film coefficient", "Air speed", "Relative humidity", "Wrap resistance"} {
-		switch given := l.filled(h); {
+		switch given := l.Filled(h); {
 		case given && !lists(s.Needs, h) && !lists(s.May, h):
-			l.fault(h, l.entry(h).text, columnUnused, s.Name, h)
-		case !given && lists(s.Needs, h) && !(h == "Air speed" && l.filled("Film coefficient")):
-			l.fault(h, "", columnNeeded, h, s.Name, published(s, h))
+			l.Fault(h, l.Entry(h).Text, columnUnused, s.Name, h)
+		case !given && lists(s.Needs, h) && !(h == "Air speed" && l.Filled("Film coefficient")):
+			l.Fault(h, "", columnNeeded, h, s.Name, published(s, h))
 		}
 	}
 	mayWrap := lists(s.Needs, "Wrap resistance") || lists(s.May, "Wrap resistance")
 	for _, h := range []string{"Radiating temperature", "Emissivity", "Surface", "Cover"} {
-		if l.filled(h) && (!mayWrap || h == "Surface" && !lists(s.May, "Relative humidity")) {
-			l.fault(h, l.entry(h).text, columnUnused, s.Name, h)
+		if l.Filled(h) && (!mayWrap || h == "Surface" && !lists(s.May, "Relative humidity")) {
+			l.Fault(h, l.Entry(h).Text, columnUnused, s.Name, h)
 		}
 	}
 	switch {
-	case x.Cover == model.LooseLid && !l.filled("Wrap resistance"):
-		l.fault("Wrap resistance", "", looseLid)
-	case x.Cover == model.TightWrap && mayWrap && x.FilmW != nil && !l.filled("Wrap resistance"):
+	case x.Cover == model.LooseLid && !l.Filled("Wrap resistance"):
+		l.Fault("Wrap resistance", "", looseLid)
+	case x.Cover == model.TightWrap && mayWrap && x.FilmW != nil && !l.Filled("Wrap resistance"):
 		l.note("Wrap resistance", "", "0 m²·K/W", "blank: the film coefficient stands for the wrap too")
-	case x.Cover == model.TightWrap && mayWrap && !l.filled("Wrap resistance"):
+	case x.Cover == model.TightWrap && mayWrap && !l.Filled("Wrap resistance"):
 		l.note("Wrap resistance", "", "0 m²·K/W", "blank: the tight wrap is taken without a resistance of its own")
-		l.r.wraps.count(l.at("Cover"))
-	case x.Cover == model.Open && l.filled("Wrap resistance"):
-		l.fault("Wrap resistance", l.entry("Wrap resistance").text, openWithWrap)
-	case x.Cover == nil && x.WrapM2KW == nil && mayWrap && !l.filled("Cover"):
+		l.r.wraps.count(l.At("Cover"))
+	case x.Cover == model.Open && l.Filled("Wrap resistance"):
+		l.Fault("Wrap resistance", l.Entry("Wrap resistance").Text, openWithWrap)
+	case x.Cover == nil && x.WrapM2KW == nil && mayWrap && !l.Filled("Cover"):
 		l.note("Cover", "", model.Open.Name, "blank: nothing lies between")
 	}
 }

@@ -14,13 +14,13 @@ import (
 // table is a sheet of which headings and rows are known.
 type table struct {
 	sheet *Sheet
-	grid  *grid
+	grid  *Grid
 	head  int              // row number of the headings
 	place map[string]*head // by heading without unit
-	lines []*line
+	lines []*Line
 	cut   bool // it has more rows than are read
 	// strays are rows without any needed cell; nobody knows what they belong to
-	strays []*line
+	strays []*Line
 }
 
 // head is one column of a table.
@@ -31,19 +31,19 @@ type head struct {
 	faults cell.Errors
 }
 
-// line is one data row while it is read.
-type line struct {
+// Line is one data row while it is read.
+type Line struct {
 	r        *reader
 	t        *table
-	row      *gridRow
+	row      *Row
 	because  cell.Errors // the faults that it has, or that it suffers from
 	readings []echoes
 	aside    bool    // hidden or struck through: somebody may have meant it away
-	merged   []block // merged cells that the row has a part of
+	merged   []Block // merged cells that the row has a part of
 }
 
-// splitHeading divides a heading into its name and what stands in brackets (or a % behind the name).
-func splitHeading(s string) (name, inBrackets string) {
+// SplitHeading divides a heading into its name and what stands in brackets (or a % behind the name).
+func SplitHeading(s string) (name, inBrackets string) {
 	s = tidy(s)
 	for _, pair := range []string{"()", "[]"} {
 		i := strings.IndexByte(s, pair[0])
@@ -70,18 +70,18 @@ var byKey = func() map[*Sheet]map[string]*Column {
 }()
 
 // headings finds the columns of a sheet that a row names; the first of two equal ones.
-func headings(s *Sheet, row *gridRow) map[string]*head {
+func headings(s *Sheet, row *Row) map[string]*head {
 	var found map[string]*head
-	for i := range row.cells {
-		if row.cells[i].kind != text {
+	for i := range row.Cells {
+		if row.Cells[i].Kind != Text {
 			continue
 		}
-		name, _ := splitHeading(row.cells[i].text)
+		name, _ := SplitHeading(row.Cells[i].Text)
 		if c := byKey[s][key(name)]; c != nil && found[c.Heading] == nil {
 			if found == nil {
 				found = map[string]*head{}
 			}
-			found[c.Heading] = &head{col: int(row.cells[i].col), column: c}
+			found[c.Heading] = &head{col: int(row.Cells[i].Col), column: c}
 		}
 	}
 	return found
@@ -98,20 +98,20 @@ func complete(s *Sheet, found map[string]*head) bool {
 }
 
 // ref is a place of the table's sheet.
-func (t *table) ref(row, col int) cell.Ref { return cell.Ref{Sheet: t.grid.name, Row: row, Col: col} }
+func (t *table) ref(row, col int) cell.Ref { return cell.Ref{Sheet: t.grid.Name, Row: row, Col: col} }
 
 // open finds the headings of a sheet and its rows. It returns nil if there is no table; the problems are the reader's.
-func (r *reader) open(g *grid, s *Sheet) *table {
+func (r *reader) open(g *Grid, s *Sheet) *table {
 	t := &table{sheet: s, grid: g}
-	if g.refused != "" {
-		r.cannotRead(s, cell.Error{At: cell.Ref{Sheet: g.name}, Msg: g.refused, Hint: g.mend})
+	if g.Refused != "" {
+		r.cannotRead(s, cell.Error{At: cell.Ref{Sheet: g.Name}, Msg: g.Refused, Hint: g.Mend})
 		return nil
 	}
-	if len(g.rows) == 0 && s.Name == "Products" {
+	if len(g.Rows) == 0 && s.Name == "Products" {
 		return nil // that the plan has no product is told in the end
 	}
-	if len(g.rows) == 0 {
-		r.add(emptySheet.problem(cell.Ref{Sheet: g.name}, cell.Warning, "", ""))
+	if len(g.Rows) == 0 {
+		r.add(emptySheet.problem(cell.Ref{Sheet: g.Name}, cell.Warning, "", ""))
 		return nil
 	}
 	first, whole := findHeader(g, s)
@@ -119,27 +119,27 @@ func (r *reader) open(g *grid, s *Sheet) *table {
 		r.missingHeadings(t, nil)
 		return nil
 	}
-	top := &g.rows[first]
-	t.head, t.place = top.n, headings(s, top)
+	top := &g.Rows[first]
+	t.head, t.place = top.N, headings(s, top)
 	if !whole {
 		r.missingHeadings(t, t.place)
 	}
-	if first > 0 && !(first == 1 && len(g.rows[0].cells) == 1 && key(g.rows[0].cells[0].text) == key(s.Help)) {
-		what := fmt.Sprintf("Row %d stands", g.rows[0].n)
+	if first > 0 && !(first == 1 && len(g.Rows[0].Cells) == 1 && key(g.Rows[0].Cells[0].Text) == key(s.Help)) {
+		what := fmt.Sprintf("Row %d stands", g.Rows[0].N)
 		if first > 1 {
-			what = fmt.Sprintf("Rows %d to %d stand", g.rows[0].n, g.rows[first-1].n)
+			what = fmt.Sprintf("Rows %d to %d stand", g.Rows[0].N, g.Rows[first-1].N)
 		}
-		r.add(aboveHeader.problem(t.ref(g.rows[0].n, 0), cell.Note, "", "", what, "and "+isAre(first)))
+		r.add(aboveHeader.problem(t.ref(g.Rows[0].N, 0), cell.Note, "", "", what, "and "+isAre(first)))
 	}
 	own := r.headings(t, top)
-	if r.plan.Columns[g.name] == nil {
-		r.plan.Columns[g.name] = map[string]int{}
+	if r.plan.Columns[g.Name] == nil {
+		r.plan.Columns[g.Name] = map[string]int{}
 	}
 	for name, h := range t.place {
 		if h.column == nil {
 			continue
 		}
-		r.plan.Columns[g.name][name] = h.col
+		r.plan.Columns[g.Name][name] = h.col
 	}
 	if whole {
 		r.rows(t, first+1, own)
@@ -155,10 +155,10 @@ func isAre(n int) string {
 }
 
 // findHeader gives the index of the first row with all needed headings, or of the likeliest one.
-func findHeader(g *grid, s *Sheet) (int, bool) {
+func findHeader(g *Grid, s *Sheet) (int, bool) {
 	best, most := -1, 0
-	for i := range g.rows {
-		found := headings(s, &g.rows[i])
+	for i := range g.Rows {
+		found := headings(s, &g.Rows[i])
 		if complete(s, found) {
 			return i, true
 		}
@@ -187,14 +187,14 @@ func (r *reader) missingHeadings(t *table, found map[string]*head) {
 }
 
 // headings checks every heading: known, once, with a unit of its quantity. It returns the columns that are the user's own.
-func (r *reader) headings(t *table, top *gridRow) (own map[int]bool) {
+func (r *reader) headings(t *table, top *Row) (own map[int]bool) {
 	own = map[int]bool{}
-	for i := range top.cells {
-		e := &top.cells[i]
-		name, inside := splitHeading(e.text)
-		at := t.ref(top.n, int(e.col))
-		if strings.HasPrefix(e.text, "#") && e.kind == text || r.ignore[key(e.text)] || r.ignore[key(name)] {
-			own[int(e.col)] = true
+	for i := range top.Cells {
+		e := &top.Cells[i]
+		name, inside := SplitHeading(e.Text)
+		at := t.ref(top.N, int(e.Col))
+		if strings.HasPrefix(e.Text, "#") && e.Kind == Text || r.ignore[key(e.Text)] || r.ignore[key(name)] {
+			own[int(e.Col)] = true
 			continue
 		}
 		var h *head
@@ -209,11 +209,11 @@ func (r *reader) headings(t *table, top *gridRow) (own map[int]bool) {
 					known = append(known, c.Heading)
 				}
 			}
-			h = &head{col: int(e.col)}
+			h = &head{col: int(e.Col)}
 			t.place["?"+strconv.Itoa(h.col)] = h
-			h.faults.Add(unknownColumn.problem(at, cell.Fault, "", e.text, t.sheet.Name, meant(name, known)))
-		case h.col != int(e.col):
-			e := doubledColumn.problem(at, cell.Fault, "", e.text, cell.ColumnName(h.col), cell.ColumnName(int(e.col)))
+			h.faults.Add(unknownColumn.problem(at, cell.Fault, "", e.Text, t.sheet.Name, meant(name, known)))
+		case h.col != int(e.Col):
+			e := doubledColumn.problem(at, cell.Fault, "", e.Text, cell.ColumnName(h.col), cell.ColumnName(int(e.Col)))
 			h.faults.Add(e)
 			r.add(e)
 			h2 := &head{col: at.Col, faults: cell.Errors{e}}
@@ -221,18 +221,18 @@ func (r *reader) headings(t *table, top *gridRow) (own map[int]bool) {
 			continue
 		default:
 			var fault *cell.Error
-			if h.unit, fault = headingUnit(at, e.text, inside, h.column); fault != nil {
+			if h.unit, fault = headingUnit(at, e.Text, inside, h.column); fault != nil {
 				h.faults.Add(*fault)
 			}
 		}
-		if e.struck {
-			h.faults.Add(struckHeading.problem(at, cell.Fault, "", e.text))
+		if e.Struck {
+			h.faults.Add(struckHeading.problem(at, cell.Fault, "", e.Text))
 		}
 		for _, f := range h.faults {
 			r.add(f)
 		}
-		if t.grid.hiddenC[int(e.col)] {
-			r.add(hiddenColumn.problem(at, cell.Warning, "", "", cell.ColumnName(int(e.col))))
+		if t.grid.HiddenCols[int(e.Col)] {
+			r.add(hiddenColumn.problem(at, cell.Warning, "", "", cell.ColumnName(int(e.Col))))
 		}
 	}
 	return own
@@ -276,21 +276,21 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 	}
 	told := map[int]bool{} // columns without heading that were told already
 	var all cell.Errors    // what every row suffers from
-	end := len(g.rows)
+	end := len(g.Rows)
 	if second := secondTable(g, t.sheet, from); second > 0 {
 		end = second
-		last := g.rows[len(g.rows)-1].n
-		e := twoTables.problem(t.ref(t.head, 0), cell.Fault, "", "", g.extent(t.head, g.rows[second-1].n), g.extent(g.rows[second].n, last))
+		last := g.Rows[len(g.Rows)-1].N
+		e := twoTables.problem(t.ref(t.head, 0), cell.Fault, "", "", g.extent(t.head, g.Rows[second-1].N), g.extent(g.Rows[second].N, last))
 		r.cannotRead(t.sheet, e)
 		all.Add(e)
 	}
-	t.lines = make([]*line, 0, len(g.rows)-from)
+	t.lines = make([]*Line, 0, len(g.Rows)-from)
 	for i := from; i < end; i++ {
-		row := &g.rows[i]
-		l := &line{r: r, t: t, row: row}
+		row := &g.Rows[i]
+		l := &Line{r: r, t: t, row: row}
 		filled, struck := false, -1
-		for j := range row.cells {
-			col := int(row.cells[j].col)
+		for j := range row.Cells {
+			col := int(row.Cells[j].Col)
 			switch h := ofHead[col]; {
 			case own[col]:
 				continue
@@ -298,17 +298,17 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 				l.suffer(h.faults)
 			case !used[col]:
 				mend := ""
-				if c := row.cells[j].text[0]; g.commas && c >= '0' && c <= '9' {
+				if c := row.Cells[j].Text[0]; g.commas && c >= '0' && c <= '9' {
 					mend = "; a value with a decimal comma needs quotation marks"
 				}
-				e := noHeading.problem(t.ref(row.n, col), cell.Fault, "", row.cells[j].text, cell.ColumnName(col), mend)
-				if !told[col] || g.csv {
+				e := noHeading.problem(t.ref(row.N, col), cell.Fault, "", row.Cells[j].Text, cell.ColumnName(col), mend)
+				if !told[col] || g.CSV {
 					r.add(e)
 				}
 				told[col] = true
 				l.because.Add(e)
 			}
-			if row.cells[j].struck && struck < 0 {
+			if row.Cells[j].Struck && struck < 0 {
 				struck = j
 			}
 			filled = true
@@ -322,17 +322,17 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 		}
 		if len(t.lines) == t.sheet.most() {
 			t.cut = true
-			r.cannotRead(t.sheet, tooManyRows.problem(t.ref(row.n, 0), cell.Fault, "", "", strconv.Itoa(t.sheet.most())))
+			r.cannotRead(t.sheet, tooManyRows.problem(t.ref(row.N, 0), cell.Fault, "", "", strconv.Itoa(t.sheet.most())))
 			break
 		}
 		l.suffer(all)
-		if row.hidden {
+		if row.Hidden {
 			l.aside = true
-			l.fault("", "", hiddenRow)
+			l.Fault("", "", hiddenRow)
 		}
 		if struck >= 0 {
 			l.aside = true
-			e := struckCell.problem(t.ref(row.n, int(row.cells[struck].col)), cell.Fault, "", row.cells[struck].text)
+			e := struckCell.problem(t.ref(row.N, int(row.Cells[struck].Col)), cell.Fault, "", row.Cells[struck].Text)
 			r.add(e)
 			l.because.Add(e)
 		}
@@ -342,16 +342,16 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 }
 
 // stray tells of text without a key, such as a remark below the table: a row in which no needed cell is filled.
-func (l *line) stray() bool {
+func (l *Line) stray() bool {
 	for _, c := range l.t.sheet.Columns {
-		if c.Needed && l.filled(c.Heading) {
+		if c.Needed && l.Filled(c.Heading) {
 			return false
 		}
 	}
-	e := &l.row.cells[0]
-	at := l.t.ref(l.row.n, int(e.col))
+	e := &l.row.Cells[0]
+	at := l.t.ref(l.row.N, int(e.Col))
 	if len(l.because) == 0 {
-		e := keyMissing.problem(at, cell.Fault, "", e.text, l.t.sheet.Columns[0].Heading)
+		e := keyMissing.problem(at, cell.Fault, "", e.Text, l.t.sheet.Columns[0].Heading)
 		l.r.add(e)
 		l.because.Add(e)
 	}
@@ -359,12 +359,12 @@ func (l *line) stray() bool {
 }
 
 // secondTable gives the index of a further row that holds all needed headings and more than one; 0 if there is none.
-func secondTable(g *grid, s *Sheet, from int) int {
-	for i := from; i < len(g.rows); i++ {
-		if len(g.rows[i].cells) < 2 {
+func secondTable(g *Grid, s *Sheet, from int) int {
+	for i := from; i < len(g.Rows); i++ {
+		if len(g.Rows[i].Cells) < 2 {
 			continue
 		}
-		if found := headings(s, &g.rows[i]); len(found) > 1 && complete(s, found) {
+		if found := headings(s, &g.Rows[i]); len(found) > 1 && complete(s, found) {
 			return i
 		}
 	}
@@ -372,33 +372,33 @@ func secondTable(g *grid, s *Sheet, from int) int {
 }
 
 // extent is the range of filled cells of some rows: "Steps!A1:H6".
-func (g *grid) extent(top, bottom int) string {
+func (g *Grid) extent(top, bottom int) string {
 	left, right := math.MaxInt, 1
-	for _, row := range g.rows {
-		if row.n >= top && row.n <= bottom {
-			left, right = min(left, int(row.cells[0].col)), max(right, int(row.cells[len(row.cells)-1].col))
+	for _, row := range g.Rows {
+		if row.N >= top && row.N <= bottom {
+			left, right = min(left, int(row.Cells[0].Col)), max(right, int(row.Cells[len(row.Cells)-1].Col))
 		}
 	}
-	return g.block(block{left, top, right, bottom})
+	return g.block(Block{left, top, right, bottom})
 }
 
-func (g *grid) block(b block) string {
-	return fmt.Sprintf("%s!%s%d:%s%d", g.name, cell.ColumnName(b.left), b.top, cell.ColumnName(b.right), b.bottom)
+func (g *Grid) block(b Block) string {
+	return fmt.Sprintf("%s!%s%d:%s%d", g.Name, cell.ColumnName(b.Left), b.Top, cell.ColumnName(b.Right), b.Bottom)
 }
 
 // mergedRows tells of merged cells in the data.
 func (r *reader) mergedRows(t *table) {
-	for _, b := range t.grid.merged {
+	for _, b := range t.grid.Merged {
 		hit := false
 		for _, h := range t.place {
-			hit = hit || h.col >= b.left && h.col <= b.right
+			hit = hit || h.col >= b.Left && h.col <= b.Right
 		}
-		if b.bottom <= t.head || !hit || len(t.lines) == 0 || b.top > t.lines[len(t.lines)-1].row.n {
+		if b.Bottom <= t.head || !hit || len(t.lines) == 0 || b.Top > t.lines[len(t.lines)-1].row.N {
 			continue
 		}
-		e := mergedCells.problem(t.ref(b.top, b.left), cell.Fault, "", "", t.grid.block(b))
+		e := mergedCells.problem(t.ref(b.Top, b.Left), cell.Fault, "", "", t.grid.block(b))
 		r.add(e)
-		for i := sort.Search(len(t.lines), func(i int) bool { return t.lines[i].row.n >= b.top }); i < len(t.lines) && t.lines[i].row.n <= b.bottom; i++ {
+		for i := sort.Search(len(t.lines), func(i int) bool { return t.lines[i].row.N >= b.Top }); i < len(t.lines) && t.lines[i].row.N <= b.Bottom; i++ {
 			t.lines[i].suffer(cell.Errors{e})
 			if l := t.lines[i]; len(l.merged) < mostReasons {
 				l.merged = append(l.merged, b)
@@ -423,51 +423,51 @@ func reasons(to *cell.Errors, es cell.Errors) {
 }
 
 // suffer adds faults that are told already.
-func (l *line) suffer(es cell.Errors) { reasons(&l.because, es) }
+func (l *Line) suffer(es cell.Errors) { reasons(&l.because, es) }
 
-// sound tells whether nothing is wrong with the row.
-func (l *line) sound() bool { return len(l.because) == 0 }
+// Sound tells whether nothing is wrong with the row.
+func (l *Line) Sound() bool { return len(l.because) == 0 }
 
-// at is the place of a column in the row; of the whole row if the sheet lacks the column.
-func (l *line) at(heading string) cell.Ref {
+// At is the place of a column in the row; of the whole row if the sheet lacks the column.
+func (l *Line) At(heading string) cell.Ref {
 	if h := l.t.place[heading]; h != nil {
-		return l.t.ref(l.row.n, h.col)
+		return l.t.ref(l.row.N, h.col)
 	}
-	return l.t.ref(l.row.n, 0)
+	return l.t.ref(l.row.N, 0)
 }
 
-// ref is the place of the row.
-func (l *line) ref() cell.Ref { return l.t.ref(l.row.n, 0) }
+// Ref is the place of the row.
+func (l *Line) Ref() cell.Ref { return l.t.ref(l.row.N, 0) }
 
-// entry is the cell of a column.
-func (l *line) entry(heading string) *entry {
+// Entry is the cell of a column.
+func (l *Line) Entry(heading string) *Entry {
 	if h := l.t.place[heading]; h != nil {
 		return l.row.at(h.col)
 	}
 	return &nothing
 }
 
-// filled tells whether a cell holds anything.
-func (l *line) filled(heading string) bool { return l.entry(heading).kind != blank }
+// Filled tells whether a cell holds anything.
+func (l *Line) Filled(heading string) bool { return l.Entry(heading).Kind != Blank }
 
-// fault tells of something wrong in a cell of the row (heading "" = the row) and marks the row.
-func (l *line) fault(heading, typed string, s saying, args ...string) {
-	e := s.problem(l.at(heading), cell.Fault, heading, typed, args...)
+// Fault tells of something wrong in a cell of the row (heading "" = the row) and marks the row.
+func (l *Line) Fault(heading, typed string, s saying, args ...string) {
+	e := s.problem(l.At(heading), cell.Fault, heading, typed, args...)
 	l.r.add(e)
 	l.because.Add(e)
 }
 
-// remark tells of something that does not keep the row from being used.
-func (l *line) remark(level cell.Level, heading, typed string, s saying, args ...string) {
-	l.r.add(s.problem(l.at(heading), level, heading, typed, args...))
+// Remark tells of something that does not keep the row from being used.
+func (l *Line) Remark(level cell.Level, heading, typed string, s saying, args ...string) {
+	l.r.add(s.problem(l.At(heading), level, heading, typed, args...))
 }
 
 // note keeps a value for the input echo.
-func (l *line) note(heading, typed, used, why string) {
+func (l *Line) note(heading, typed, used, why string) {
 	if l.readings == nil {
-		l.readings = []echoes{{sheet: l.t.grid.name, row: l.row.n, list: make([]echo, 0, len(l.row.cells)+2)}} // and about two defaults
+		l.readings = []echoes{{sheet: l.t.grid.Name, row: l.row.N, list: make([]echo, 0, len(l.row.Cells)+2)}} // and about two defaults
 	}
-	e := echo{column: l.t.sheet.Column(heading), col: int32(l.at(heading).Col), text: typed, used: used}
+	e := echo{column: l.t.sheet.Column(heading), col: int32(l.At(heading).Col), text: typed, used: used}
 	if why != "" {
 		e.text, e.blank = why, true
 	}
@@ -475,38 +475,38 @@ func (l *line) note(heading, typed, used, why string) {
 }
 
 // broken tells of a cell that holds no value at all.
-func (l *line) broken(heading string, e *entry) bool {
-	switch e.kind {
-	case broken:
-		l.fault(heading, e.text, errorValue)
-	case noStored:
-		l.fault(heading, "", noResult, l.at(heading).String())
+func (l *Line) broken(heading string, e *Entry) bool {
+	switch e.Kind {
+	case Broken:
+		l.Fault(heading, e.Text, errorValue)
+	case NoStored:
+		l.Fault(heading, "", noResult, l.At(heading).String())
 	default:
-		if e.formula {
-			l.r.formula(l.at(heading))
+		if e.Formula {
+			l.r.formula(l.At(heading))
 		}
 		return false
 	}
 	return true
 }
 
-// words reads a cell as words; "" for a blank. A needed blank is a fault.
-func (l *line) words(heading string) string {
-	c, e := l.t.sheet.Column(heading), l.entry(heading)
-	if e.kind == blank {
+// Words reads a cell as Words; "" for a blank. A needed blank is a fault.
+func (l *Line) Words(heading string) string {
+	c, e := l.t.sheet.Column(heading), l.Entry(heading)
+	if e.Kind == Blank {
 		l.lacks(c)
 		return ""
 	}
 	if l.broken(heading, e) {
 		return ""
 	}
-	s := e.text
+	s := e.Text
 	if most := c.longest(); tooLong(s, most) {
-		l.fault(heading, string([]rune(s)[:40])+"…", textTooLong, strconv.Itoa(most))
+		l.Fault(heading, string([]rune(s)[:40])+"…", textTooLong, strconv.Itoa(most))
 		return ""
 	}
-	if e.kind == figure && e.form == date {
-		s = isoDate(e.text, l.t.grid.is1904)
+	if e.Kind == Figure && e.Form == Date {
+		s = isoDate(e.Text, l.t.grid.Is1904)
 	}
 	l.note(heading, s, s, "")
 	return s
@@ -522,17 +522,17 @@ func (c *Column) longest() int {
 }
 
 // lacks tells of a blank cell where one must be filled, unless it is blank because it is merged with others, which was told.
-func (l *line) lacks(c *Column) {
+func (l *Line) lacks(c *Column) {
 	if !c.Needed {
 		return
 	}
-	at := l.at(c.Heading)
+	at := l.At(c.Heading)
 	for _, b := range l.merged {
-		if at.Col >= b.left && at.Col <= b.right {
+		if at.Col >= b.Left && at.Col <= b.Right {
 			return
 		}
 	}
-	l.fault(c.Heading, "", missing, c.Heading, mendMissing(c))
+	l.Fault(c.Heading, "", missing, c.Heading, mendMissing(c))
 }
 
 func mendMissing(c *Column) string {
@@ -545,10 +545,10 @@ func mendMissing(c *Column) string {
 	return "fill it"
 }
 
-// choice reads a cell as one of the words of its column, and gives that word as it stands in the list; "" for a blank or a fault.
-func (l *line) choice(heading string) string {
-	c, e := l.t.sheet.Column(heading), l.entry(heading)
-	if e.kind == blank {
+// Choice reads a cell as one of the words of its column, and gives that word as it stands in the list; "" for a blank or a fault.
+func (l *Line) Choice(heading string) string {
+	c, e := l.t.sheet.Column(heading), l.Entry(heading)
+	if e.Kind == Blank {
 		l.lacks(c)
 		return ""
 	}
@@ -556,28 +556,28 @@ func (l *line) choice(heading string) string {
 		return ""
 	}
 	for _, w := range c.Choices {
-		if key(w) == key(e.text) {
-			l.note(heading, e.text, w, "")
+		if key(w) == key(e.Text) {
+			l.note(heading, e.Text, w, "")
 			return w
 		}
 	}
-	l.fault(heading, e.text, notAChoice, heading, meant(e.text, c.Choices), strings.Join(c.Choices, ", "))
+	l.Fault(heading, e.Text, notAChoice, heading, meant(e.Text, c.Choices), strings.Join(c.Choices, ", "))
 	return ""
 }
 
-// number reads a cell as a value of its column's quantity, in the unit that the program computes in; nil for a blank or a fault.
-func (l *line) number(heading string) *float64 {
-	v := l.value(heading)
+// Number reads a cell as a value of its column's quantity, in the unit that the program computes in; nil for a blank or a fault.
+func (l *Line) Number(heading string) *float64 {
+	v := l.Value(heading)
 	if v == nil {
 		return nil
 	}
 	return &v.Computed
 }
 
-// value is number with the text as typed.
-func (l *line) value(heading string) *unit.Value {
-	c, e := l.t.sheet.Column(heading), l.entry(heading)
-	if e.kind == blank {
+// Value is number with the text as typed.
+func (l *Line) Value(heading string) *unit.Value {
+	c, e := l.t.sheet.Column(heading), l.Entry(heading)
+	if e.Kind == Blank {
 		l.lacks(c)
 		return nil
 	}
@@ -590,7 +590,7 @@ func (l *line) value(heading string) *unit.Value {
 		return nil
 	}
 	if s, args := c.refuses(v.Computed); s != nil {
-		l.fault(heading, v.Typed, *s, args...)
+		l.Fault(heading, v.Typed, *s, args...)
 		return nil
 	}
 	if !l.likely(c, v) {
@@ -601,9 +601,9 @@ func (l *line) value(heading string) *unit.Value {
 }
 
 // likely holds a number against what is usual and what is possible; false if it cannot be.
-func (l *line) likely(c *Column, v unit.Value) bool {
+func (l *Line) likely(c *Column, v unit.Value) bool {
 	usual, slip := c.Usual, ""
-	if c.OfMedium != nil && key(l.entry("Where").text) == "medium" {
+	if c.OfMedium != nil && key(l.Entry("Where").Text) == "medium" {
 		usual = c.OfMedium
 	}
 	if strings.HasSuffix(v.Typed, spaced(c.Unit)) {
@@ -611,10 +611,10 @@ func (l *line) likely(c *Column, v unit.Value) bool {
 	}
 	switch {
 	case c.Possible.outside(v.Computed):
-		l.fault(c.Heading, v.Typed, impossible, c.shown(v.Computed), c.between(c.Possible), c.between(c.Usual), slip)
+		l.Fault(c.Heading, v.Typed, impossible, c.shown(v.Computed), c.between(c.Possible), c.between(c.Usual), slip)
 		return false
 	case usual.outside(v.Computed):
-		l.remark(cell.Warning, c.Heading, v.Typed, unusual, c.shown(v.Computed), c.between(usual), slip)
+		l.Remark(cell.Warning, c.Heading, v.Typed, unusual, c.shown(v.Computed), c.between(usual), slip)
 	}
 	return true
 }
@@ -641,44 +641,44 @@ func (c *Column) whole(x float64) string {
 }
 
 // convert makes a value of a cell, by its kind and its number format.
-func (l *line) convert(heading string, e *entry, c *Column, u *unit.Unit) (unit.Value, bool) {
+func (l *Line) convert(heading string, e *Entry, c *Column, u *unit.Unit) (unit.Value, bool) {
 	q := c.Quantity
-	if e.kind == text {
-		v, m := q.Parse(e.text, u, l.r.decimal)
+	if e.Kind == Text {
+		v, m := q.Parse(e.Text, u, l.r.decimal)
 		if m != nil {
-			l.fault(heading, e.text, asFound, m.Says, m.Mend)
+			l.Fault(heading, e.Text, asFound, m.Says, m.Mend)
 			return v, false
 		}
-		if !l.r.shownBy.IsZero() && unit.Ambiguous(e.text) {
+		if !l.r.shownBy.IsZero() && unit.Ambiguous(e.Text) {
 			sign := map[unit.Decimal]string{unit.Point: "point", unit.Comma: "comma"}[l.r.decimal]
-			l.remark(cell.Note, heading, e.text, readByEvidence, short(v.Computed)+spaced(q.Units[0].Name()), sign, l.r.shownBy.String())
+			l.Remark(cell.Note, heading, e.Text, readByEvidence, short(v.Computed)+spaced(q.Units[0].Name()), sign, l.r.shownBy.String())
 		}
 		return v, true
 	}
-	x, err := strconv.ParseFloat(e.text, 64)
+	x, err := strconv.ParseFloat(e.Text, 64)
 	expected := article(q.Name)
 	switch {
-	case e.kind == truth:
-		l.fault(heading, e.text, isTruth, expected)
+	case e.Kind == Truth:
+		l.Fault(heading, e.Text, isTruth, expected)
 	case err != nil || math.IsNaN(x) || math.IsInf(x, 0):
-		l.fault(heading, e.text, notNumber, expected)
-	case e.form == date:
-		l.fault(heading, isoDate(e.text, l.t.grid.is1904), isDate, expected)
-	case e.form == clock && q != &unit.Duration:
-		l.fault(heading, clockWords(x), isTime, expected)
-	case e.form == clock:
+		l.Fault(heading, e.Text, notNumber, expected)
+	case e.Form == Date:
+		l.Fault(heading, isoDate(e.Text, l.t.grid.Is1904), isDate, expected)
+	case e.Form == Clock && q != &unit.Duration:
+		l.Fault(heading, clockWords(x), isTime, expected)
+	case e.Form == Clock:
 		s := math.Round(x*86400*1000) / 1000
 		return unit.Value{Computed: s, Typed: clockWords(x)}, true
-	case e.form == percent && q == &unit.Percent:
+	case e.Form == Percent && q == &unit.Percent:
 		return u.Of(math.Round(x*100*1e12)/1e12, short(x*100)), true
-	case e.form == percent && !q.Plain():
-		l.fault(heading, short(x*100)+" %", isPercent, expected)
+	case e.Form == Percent && !q.Plain():
+		l.Fault(heading, short(x*100)+" %", isPercent, expected)
 	case strings.Contains(u.Name(), ":"):
-		l.fault(heading, e.text, notClock, u.Name())
-	case e.form >= worded && q.Unit(l.t.grid.words[e.form-worded]) != nil && q.Unit(l.t.grid.words[e.form-worded]) != u:
-		l.fault(heading, shown(e.text, x), isWorded, l.t.grid.words[e.form-worded], u.Name())
+		l.Fault(heading, e.Text, notClock, u.Name())
+	case e.Form >= Worded && q.Unit(l.t.grid.words[e.Form-Worded]) != nil && q.Unit(l.t.grid.words[e.Form-Worded]) != u:
+		l.Fault(heading, shown(e.Text, x), isWorded, l.t.grid.words[e.Form-Worded], u.Name())
 	default:
-		return u.Of(x, shown(e.text, x)), true
+		return u.Of(x, shown(e.Text, x)), true
 	}
 	return unit.Value{}, false
 }

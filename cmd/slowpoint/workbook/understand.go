@@ -12,7 +12,7 @@ import (
 )
 
 // understand fills a plan, of which name and digest are known, from its sheets. A workbook, a folder and the demo all come this way.
-func understand(grids []*grid, p *Plan) (*Plan, error) {
+func understand(grids []*Grid, p *Plan) (*Plan, error) {
 	r := newReader(p)
 	if err := r.sheets(grids); err != nil {
 		return nil, err
@@ -28,13 +28,13 @@ func newReader(p *Plan) *reader {
 }
 
 // readFiles takes every .csv file of a folder, wherever it is kept, as a sheet, in the order of their names, and the digest of them all.
-func readFiles(files fs.FS, folder string) ([]*grid, string, error) {
+func readFiles(files fs.FS, folder string) ([]*Grid, string, error) {
 	list, err := fs.ReadDir(files, ".")
 	if err != nil {
 		return nil, "", fmt.Errorf("the folder %s cannot be read: %v", folder, reason(err))
 	}
 	sum := sha256.New()
-	var grids []*grid
+	var grids []*Grid
 	total := int64(0)
 	for _, f := range list { // sorted by name
 		ext := filepath.Ext(f.Name())

@@ -22,7 +22,7 @@ type book struct {
 	sheets  []bookSheet
 	is1904  bool
 	strings []string
-	forms   []form   // of each cell style
+	forms   []Form   // of each cell style
 	words   []string // of forms from worded on
 	struck  struck
 }
@@ -39,7 +39,7 @@ type bookSheet struct {
 }
 
 // readWorkbook reads every sheet of a workbook; hidden ones are given without rows.
-func readWorkbook(data []byte) ([]*grid, error) {
+func readWorkbook(data []byte) ([]*Grid, error) {
 	z, err := container(data)
 	if err != nil {
 		return nil, err
@@ -53,14 +53,14 @@ func readWorkbook(data []byte) ([]*grid, error) {
 	if err != nil {
 		return nil, err
 	}
-	grids := make([]*grid, len(b.sheets))
+	grids := make([]*Grid, len(b.sheets))
 	cells := mostCells
 	for i, s := range b.sheets {
 		f := byName[strings.ToLower(s.part)]
 		if f == nil {
 			return nil, damaged(s.part, fmt.Errorf("it is missing, and the sheet %s is in it", s.name))
 		}
-		g := &grid{name: tidy(s.name), hidden: s.hidden, hiddenC: map[int]bool{}, words: b.words, is1904: b.is1904}
+		g := &Grid{Name: tidy(s.name), Hidden: s.hidden, HiddenCols: map[int]bool{}, words: b.words, Is1904: b.is1904}
 		if err := m.part(f, func(r io.Reader) error { return b.sheet(r, g, &cells) }); err != nil {
 			return nil, err
 		}
@@ -293,7 +293,7 @@ func unescape(s string) string {
 
 // readStyles finds what the number format of each cell style makes of a number, and which styles strike through.
 func (b *book) readStyles(r io.Reader) error {
-	custom := map[string]form{}
+	custom := map[string]Form{}
 	var lined map[int]bool // fonts that strike through
 	fonts := 0             // begun so far
 	inFonts, inCells := false, false
@@ -336,33 +336,33 @@ func (b *book) readStyles(r io.Reader) error {
 }
 
 // builtIn gives the form of the number formats that have a number and no code (ECMA-376 part 1, 18.8.30).
-func builtIn(id string) form {
+func builtIn(id string) Form {
 	n, _ := strconv.Atoi(id)
 	switch {
 	case n == 9 || n == 10:
-		return percent
+		return Percent
 	case n >= 18 && n <= 21 || n >= 45 && n <= 47:
-		return clock
+		return Clock
 	case n >= 14 && n <= 17 || n == 22 || n >= 27 && n <= 36 || n >= 50 && n <= 58:
-		return date
+		return Date
 	}
-	return bare
+	return Bare
 }
 
 // form is formOf, but tells bare formats apart that show words behind the number.
-func (b *book) form(code string) form {
+func (b *book) form(code string) Form {
 	f := formOf(code)
 	words := behind(code)
-	if f != bare || words == "" || len(b.words) >= 200 {
+	if f != Bare || words == "" || len(b.words) >= 200 {
 		return f
 	}
 	for i, w := range b.words {
 		if w == words {
-			return worded + form(i)
+			return Worded + Form(i)
 		}
 	}
 	b.words = append(b.words, words)
-	return worded + form(len(b.words)-1)
+	return Worded + Form(len(b.words)-1)
 }
 
 // behind gives the words that the first part of a number format code shows behind the number: cm of 0.0" cm", °C of 0\ °\C.
@@ -397,7 +397,7 @@ func behind(code string) string {
 }
 
 // formOf reads a number format code: what stands in quotes, behind a backslash or in brackets is no part of it, but [h], [m] and [s].
-func formOf(code string) form {
+func formOf(code string) Form {
 	code = strings.ToLower(code)
 	var plain strings.Builder
 	for i := 0; i < len(code); i++ {
@@ -427,28 +427,28 @@ func formOf(code string) form {
 	s := plain.String()
 	switch {
 	case strings.Contains(s, "general"):
-		return bare
+		return Bare
 	case strings.ContainsAny(s, "yd"):
-		return date
+		return Date
 	case strings.ContainsAny(s, "hs"):
-		return clock
+		return Clock
 	case strings.Contains(s, "m"):
-		return date
+		return Date
 	case strings.Contains(s, "%"):
-		return percent
+		return Percent
 	}
-	return bare
+	return Bare
 }
 
 // sheet reads the cells of one sheet. left is how many cells the plan may still have.
-func (b *book) sheet(r io.Reader, g *grid, left *int) error {
-	row := gridRow{}
+func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
+	row := Row{}
 	col, filled := 0, 0
 	flush := func() {
-		if len(row.cells) > 0 && !g.hidden {
-			g.rows = append(g.rows, row)
+		if len(row.Cells) > 0 && !g.Hidden {
+			g.Rows = append(g.Rows, row)
 		}
-		row = gridRow{n: row.n}
+		row = Row{N: row.N}
 	}
 	rooted := false
 	err := elements(r, func(d *xml.Decoder, e xml.StartElement) error {
@@ -459,16 +459,16 @@ func (b *book) sheet(r io.Reader, g *grid, left *int) error {
 		switch e.Name.Local {
 		case "row":
 			flush()
-			next, err := startRow(e, row.n)
+			next, err := startRow(e, row.N)
 			if err != nil {
 				return err
 			}
 			row, col = next, 0
 		case "c":
-			if row.n == 0 {
+			if row.N == 0 {
 				return errors.New("a cell stands outside the rows")
 			}
-			n, err := column(attr(e, "r"), row.n, col)
+			n, err := column(attr(e, "r"), row.N, col)
 			if err != nil {
 				return err
 			}
@@ -480,29 +480,29 @@ func (b *book) sheet(r io.Reader, g *grid, left *int) error {
 			if err != nil {
 				return err
 			}
-			if c.kind == blank {
+			if c.Kind == Blank {
 				return nil
 			}
-			if len(row.cells) == 0 {
+			if len(row.Cells) == 0 {
 				if filled++; filled > mostRows+1000 {
-					g.refused, g.mend = fill(tooManyRows.msg, []string{strconv.Itoa(mostRows)}), tooManyRows.hint
+					g.Refused, g.Mend = fill(tooManyRows.msg, []string{strconv.Itoa(mostRows)}), tooManyRows.hint
 				}
-				row.cells = make([]entry, 0, 12)
+				row.Cells = make([]Entry, 0, 12)
 			}
-			c.col = int32(col)
-			if g.refused == "" {
-				row.cells = append(row.cells, c)
+			c.Col = int32(col)
+			if g.Refused == "" {
+				row.Cells = append(row.Cells, c)
 			}
 		case "mergeCell":
 			if m, ok := parseBlock(attr(e, "ref")); ok {
-				g.merged = append(g.merged, m)
+				g.Merged = append(g.Merged, m)
 			}
 		case "col":
 			if h := attr(e, "hidden"); h == "1" || h == "true" {
 				from, _ := strconv.Atoi(attr(e, "min"))
 				to, _ := strconv.Atoi(attr(e, "max"))
 				for i := max(from, 1); i <= min(to, mostColumns); i++ {
-					g.hiddenC[i] = true
+					g.HiddenCols[i] = true
 				}
 			}
 		}
@@ -513,26 +513,26 @@ func (b *book) sheet(r io.Reader, g *grid, left *int) error {
 }
 
 // startRow reads what a row says of itself, after the row before.
-func startRow(e xml.StartElement, before int) (gridRow, error) {
+func startRow(e xml.StartElement, before int) (Row, error) {
 	n := before + 1
 	if a := attr(e, "r"); a != "" {
 		v, err := strconv.Atoi(a)
 		if err != nil {
-			return gridRow{}, fmt.Errorf("%q is not a row number", a)
+			return Row{}, fmt.Errorf("%q is not a row number", a)
 		}
 		if v < n {
-			return gridRow{}, fmt.Errorf("row %d comes after row %d", v, before)
+			return Row{}, fmt.Errorf("row %d comes after row %d", v, before)
 		}
 		n = v
 	}
 	if n > lastRow {
-		return gridRow{}, fmt.Errorf("row %d does not exist in a spreadsheet", n)
+		return Row{}, fmt.Errorf("row %d does not exist in a spreadsheet", n)
 	}
 	hidden := attr(e, "hidden") == "1" || attr(e, "hidden") == "true"
 	if h, err := strconv.ParseFloat(attr(e, "ht"), 64); err == nil && h == 0 && attr(e, "customHeight") != "" {
 		hidden = true // a row of no height
 	}
-	return gridRow{n: n, hidden: hidden}, nil
+	return Row{N: n, Hidden: hidden}, nil
 }
 
 // column reads a cell's name (which must lie in its row) and gives its column, after the one before.
@@ -570,14 +570,14 @@ func parseName(name string) (col, row int, ok bool) {
 	return col, row, err == nil && i > 0 && i < 4 && row > 0 && name[i] != '+' && col <= 16384
 }
 
-func parseBlock(ref string) (block, bool) {
+func parseBlock(ref string) (Block, bool) {
 	a, b, two := strings.Cut(ref, ":")
 	if !two {
 		b = a
 	}
 	l, t, ok := parseName(a)
 	r, bo, ok2 := parseName(b)
-	return block{l, t, r, bo}, ok && ok2
+	return Block{l, t, r, bo}, ok && ok2
 }
 
 // stored is what the XML of a cell holds.
@@ -587,12 +587,12 @@ type stored struct {
 }
 
 // cell reads one cell up to its end.
-func (b *book) cell(d *xml.Decoder, e xml.StartElement) (entry, error) {
+func (b *book) cell(d *xml.Decoder, e xml.StartElement) (Entry, error) {
 	in := stored{kind: attr(e, "t")}
 	for depth := 1; depth > 0; {
 		t, err := d.Token()
 		if err != nil {
-			return entry{}, midway(err)
+			return Entry{}, midway(err)
 		}
 		switch t := t.(type) {
 		case xml.StartElement:
@@ -609,7 +609,7 @@ func (b *book) cell(d *xml.Decoder, e xml.StartElement) (entry, error) {
 				depth++
 			}
 			if err != nil {
-				return entry{}, midway(err)
+				return Entry{}, midway(err)
 			}
 		case xml.EndElement:
 			depth--
@@ -619,18 +619,18 @@ func (b *book) cell(d *xml.Decoder, e xml.StartElement) (entry, error) {
 	switch {
 	case err != nil:
 		return c, fmt.Errorf("the cell %s %w", attr(e, "r"), err)
-	case tooLong(c.text, mostText):
+	case tooLong(c.Text, mostText):
 		return c, fmt.Errorf("the cell %s holds more than %d characters", attr(e, "r"), mostText)
 	}
 	return c, nil
 }
 
 // meaning makes an entry of what a cell holds; style is the number of its cell style.
-func (b *book) meaning(in stored, style string) (entry, error) {
-	c := entry{formula: in.formula, struck: in.struck}
+func (b *book) meaning(in stored, style string) (Entry, error) {
+	c := Entry{Formula: in.formula, Struck: in.struck}
 	if b.struck.styles != nil {
 		n, err := strconv.Atoi(style)
-		c.struck = c.struck || err == nil && b.struck.styles[n]
+		c.Struck = c.Struck || err == nil && b.struck.styles[n]
 	}
 	switch {
 	case in.kind == "s" && in.value != "":
@@ -638,33 +638,33 @@ func (b *book) meaning(in stored, style string) (entry, error) {
 		if err != nil || n < 0 || n >= len(b.strings) {
 			return c, fmt.Errorf("points at text %s of %d shared texts", in.value, len(b.strings))
 		}
-		c.kind, c.text = text, b.strings[n]
-		c.struck = c.struck || b.struck.texts[n]
+		c.Kind, c.Text = Text, b.strings[n]
+		c.Struck = c.Struck || b.struck.texts[n]
 	case in.kind == "inlineStr":
-		c.kind, c.text = text, tidy(in.inline)
+		c.Kind, c.Text = Text, tidy(in.inline)
 	case in.formula && (!in.hasV || in.value == "" && in.kind != "str"): // of text, <v></v> is the stored result "", a missing <v> is none
-		c.kind = noStored
+		c.Kind = NoStored
 		return c, nil
 	case in.value == "":
 	case in.kind == "str":
-		c.kind, c.text = text, tidy(unescape(in.value))
+		c.Kind, c.Text = Text, tidy(unescape(in.value))
 	case in.kind == "b":
-		c.kind, c.text = truth, map[bool]string{true: "TRUE", false: "FALSE"}[in.value == "1" || in.value == "true"]
+		c.Kind, c.Text = Truth, map[bool]string{true: "TRUE", false: "FALSE"}[in.value == "1" || in.value == "true"]
 	case in.kind == "e":
-		c.kind, c.text = broken, in.value
+		c.Kind, c.Text = Broken, in.value
 	case in.kind == "d":
-		c.kind, c.text = text, tidy(in.value)
+		c.Kind, c.Text = Text, tidy(in.value)
 	default:
-		c.kind, c.text = figure, strings.TrimSpace(in.value)
+		c.Kind, c.Text = Figure, strings.TrimSpace(in.value)
 		if n, err := strconv.Atoi(style); err == nil && n >= 0 && n < len(b.forms) {
-			c.form = b.forms[n]
+			c.Form = b.forms[n]
 		}
 	}
 	switch {
-	case c.text == "":
-		return entry{}, nil
-	case c.kind == text && failed(c.text):
-		c.kind = broken
+	case c.Text == "":
+		return Entry{}, nil
+	case c.Kind == Text && failed(c.Text):
+		c.Kind = Broken
 	}
 	return c, nil
 }
