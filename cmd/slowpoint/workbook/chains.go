@@ -18,7 +18,7 @@ func (r *reader) chains() {
 		if p.Process == "" {
 			continue
 		}
-		pr := r.processes[key(p.Process)]
+		pr := r.processes[Key(p.Process)]
 		if pr == nil || len(pr.steps) == 0 {
 			if pr != nil && len(p.own) > 0 {
 				p.line.Fault("Process", p.Process, onlyOwnRows)
@@ -44,14 +44,14 @@ func (r *reader) chain(p *product, pr *process) {
 		}
 	}
 	for _, s := range pr.steps {
-		if p.own[key(s.Name)] == nil {
+		if p.own[Key(s.Name)] == nil {
 			p.suffer(s.line.because)
 		}
 		for _, f := range s.faces {
 			p.suffer(f.line.because)
 			p.faceFits(f)
 		}
-		for _, f := range p.faces[key(s.Name)] {
+		for _, f := range p.faces[Key(s.Name)] {
 			p.faceFits(f)
 		}
 	}
@@ -62,7 +62,7 @@ func (r *reader) chain(p *product, pr *process) {
 		var parts [][]echoes
 		for _, s := range pr.steps {
 			use := s
-			if o := p.own[key(s.Name)]; o != nil {
+			if o := p.own[Key(s.Name)]; o != nil {
 				use = o
 			}
 			st := use.Step
@@ -146,12 +146,12 @@ func (p *product) lines(pr *process) []*Line {
 		}
 	}
 	for _, s := range pr.steps {
-		if o := p.own[key(s.Name)]; o != nil {
+		if o := p.own[Key(s.Name)]; o != nil {
 			out = append(out, o.line)
 		} else {
 			out = append(out, s.line)
 		}
-		for _, f := range append(s.faces[:len(s.faces):len(s.faces)], p.faces[key(s.Name)]...) {
+		for _, f := range append(s.faces[:len(s.faces):len(s.faces)], p.faces[Key(s.Name)]...) {
 			out = append(out, f.line)
 		}
 	}

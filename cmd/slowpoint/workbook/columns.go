@@ -1,6 +1,8 @@
 package workbook
 
 import (
+	"sync"
+
 	"slowpoint/model"
 	"slowpoint/model/unit"
 	"slowpoint/rules"
@@ -12,6 +14,20 @@ type Sheet struct {
 	Help    string // one line above the table in the blank workbook
 	Columns []*Column
 	Refused string // for a sheet that is recognised and cannot be used yet: why; "" if it is read
+
+	byKey     map[string]*Column // columns by the key of their headings, made when first needed
+	byKeyOnce sync.Once
+}
+
+// known finds a column by the key of its heading; nil if there is none.
+func (s *Sheet) known(k string) *Column {
+	s.byKeyOnce.Do(func() {
+		s.byKey = make(map[string]*Column, len(s.Columns))
+		for _, c := range s.Columns {
+			s.byKey[Key(c.Heading)] = c
+		}
+	})
+	return s.byKey[k]
 }
 
 // Column is one column of a sheet.

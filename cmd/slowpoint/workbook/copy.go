@@ -89,8 +89,9 @@ func copyRows(rows Rows, old []byte) (out []byte, there, notCarried []string, er
 
 // written gives a copy of the rows, each once in Tables and Groups, with the decimal sign of the plan.
 func (rows Rows) written(grids []*Grid, c *copier) (Rows, error) {
-	r := newReader(&Plan{})
-	if err := r.sheets(grids); err != nil {
+	r := newReader(&Plan{}, Sheets)
+	r.sheets(grids)
+	if err := r.isPlan(); err != nil {
 		return nil, err
 	}
 	r.planItems()
@@ -150,7 +151,7 @@ func (c *copier) find(s *Sheet, grids []*Grid) (*copySheet, error) {
 	cs := &copySheet{Sheet: s, heads: map[string]*head{}, own: map[string]string{}}
 	var g *Grid
 	for _, x := range grids {
-		if sheetOf(x.Name) == s {
+		if sheetOf(Sheets, x.Name) == s {
 			g = x
 			break
 		}
@@ -206,10 +207,10 @@ func (c *copier) fit(sheet string, rows Rows) []map[string]string {
 		names, tables := byName(rows["Tables"], "Table")
 		for _, name := range names {
 			taken, have := byName(c.sheets["Tables"].rows, "Table")
-			now := c.settle(name, taken, func(as string) bool { return c.sheets["Tables"].sameTable(c.decimal, have[key(as)], tables[key(name)]) })
+			now := c.settle(name, taken, func(as string) bool { return c.sheets["Tables"].sameTable(c.decimal, have[Key(as)], tables[Key(name)]) })
 			c.rename(rows["Limits"], "Table", name, now)
-			if have[key(now)] == nil {
-				out = append(out, renamed(tables[key(name)], "Table", now)...)
+			if have[Key(now)] == nil {
+				out = append(out, renamed(tables[Key(name)], "Table", now)...)
 			}
 		}
 	case "Groups":
@@ -218,28 +219,28 @@ func (c *copier) fit(sheet string, rows Rows) []map[string]string {
 			taken, have := byName(c.sheets["Groups"].rows, "Group")
 			used, _ := byName(c.sheets["Limits"].rows, "Group")
 			for _, u := range used {
-				if have[key(u)] == nil { // a group without a row is all of
-					taken, have[key(u)] = append(taken, u), []map[string]string{{"Group": u, "Join": "all of"}}
+				if have[Key(u)] == nil { // a group without a row is all of
+					taken, have[Key(u)] = append(taken, u), []map[string]string{{"Group": u, "Join": "all of"}}
 				}
 			}
-			g := groups[key(name)][0]
+			g := groups[Key(name)][0]
 			now := c.settle(name, taken, func(as string) bool {
-				h := have[key(as)][0]
-				return key(h["Join"]) == key(g["Join"]) && key(h["Within"]) == key(g["Within"])
+				h := have[Key(as)][0]
+				return Key(h["Join"]) == Key(g["Join"]) && Key(h["Within"]) == Key(g["Within"])
 			})
 			c.rename(rows["Limits"], "Group", name, now)
 			c.rename(rows["Groups"], "Within", name, now)
-			if have[key(now)] == nil {
-				out = append(out, renamed(groups[key(name)][:1], "Group", now)...)
+			if have[Key(now)] == nil {
+				out = append(out, renamed(groups[Key(name)][:1], "Group", now)...)
 			}
 		}
 	case "Limits":
 		taken, have := byName(c.sheets["Limits"].rows, "Limit")
 		for _, l := range rows["Limits"] {
 			now := c.settle(l["Limit"], taken, func(as string) bool {
-				return slices.ContainsFunc(have[key(as)], func(h map[string]string) bool { return c.sheets["Limits"].sameLimit(c.decimal, h, l) })
+				return slices.ContainsFunc(have[Key(as)], func(h map[string]string) bool { return c.sheets["Limits"].sameLimit(c.decimal, h, l) })
 			})
-			if old := have[key(now)]; old != nil {
+			if old := have[Key(now)]; old != nil {
 				c.there = append(c.there, old[0]["Limit"])
 				continue
 			}
@@ -258,10 +259,10 @@ func byName(rows []map[string]string, column string) (order []string, by map[str
 		if name == "" {
 			continue
 		}
-		if by[key(name)] == nil {
+		if by[Key(name)] == nil {
 			order = append(order, name)
 		}
-		by[key(name)] = append(by[key(name)], r)
+		by[Key(name)] = append(by[Key(name)], r)
 	}
 	return order, by
 }
@@ -269,7 +270,7 @@ func byName(rows []map[string]string, column string) (order []string, by map[str
 // settle gives the name that something new takes: its own where that is free or what has it says the same, else a numbered one.
 func (c *copier) settle(name string, taken []string, same func(as string) bool) string {
 	is := func(n string) bool {
-		return slices.ContainsFunc(taken, func(t string) bool { return key(t) == key(n) })
+		return slices.ContainsFunc(taken, func(t string) bool { return Key(t) == Key(n) })
 	}
 	now := name
 	for n := 2; is(now) && !same(now); n++ {
@@ -281,7 +282,7 @@ func (c *copier) settle(name string, taken []string, same func(as string) bool) 
 // rename changes a name in a column of rows.
 func (c *copier) rename(rows []map[string]string, column, from, to string) {
 	for i, r := range rows {
-		if from != to && key(r[column]) == key(from) {
+		if from != to && Key(r[column]) == Key(from) {
 			rows[i] = renamed([]map[string]string{r}, column, to)[0]
 		}
 	}
@@ -308,7 +309,7 @@ var theUsers = []string{"Limit", "CCP", "Hazard", "Confirmed by", "Confirmed on"
 func (cs *copySheet) sameLimit(d unit.Decimal, have, want map[string]string) bool {
 	for _, col := range cs.Columns {
 		a, b := have[col.Heading], want[col.Heading]
-		if slices.Contains(theUsers, col.Heading) || key(a) == key(b) && col.Quantity == nil {
+		if slices.Contains(theUsers, col.Heading) || Key(a) == Key(b) && col.Quantity == nil {
 			continue
 		}
 		if col.Quantity == nil || a == "" || b == "" {

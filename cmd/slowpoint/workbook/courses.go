@@ -27,10 +27,10 @@ func (r *reader) readCourses() {
 		if name == "" {
 			continue
 		}
-		c := r.courses[key(name)]
+		c := r.courses[Key(name)]
 		if c == nil {
 			c = &course{Course: model.Course{Name: name}}
-			r.courses[key(name)] = c
+			r.courses[Key(name)] = c
 			if at != nil && *at != 0 {
 				l.Fault("Time", l.Entry("Time").Text, courseStart, name)
 			}

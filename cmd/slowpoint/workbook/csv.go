@@ -58,7 +58,7 @@ func csvGrid(name string, data []byte) *Grid {
 	if !bytes.ContainsRune(data, '\n') { // lines end with \r alone, as old spreadsheet programs on the Mac have it
 		data = bytes.ReplaceAll(data, []byte("\r"), []byte("\n"))
 	}
-	sheet := sheetOf(g.Name)
+	sheet := sheetOf(Sheets, g.Name)
 	best, score := ',', -1
 	for _, d := range []rune{',', ';', '\t'} {
 		if n := likeness(sheet, data, d); n > score {
@@ -174,10 +174,10 @@ func plainCSV(err error) string {
 	return err.Error()
 }
 
-// sheetOf finds a sheet of the plan by the name that the user gave it; nil if there is none.
-func sheetOf(name string) *Sheet {
-	for _, s := range Sheets {
-		if key(s.Name) == key(name) {
+// sheetOf finds a sheet of a list by the name that the user gave it; nil if there is none.
+func sheetOf(list []*Sheet, name string) *Sheet {
+	for _, s := range list {
+		if Key(s.Name) == Key(name) {
 			return s
 		}
 	}

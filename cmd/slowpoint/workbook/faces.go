@@ -30,7 +30,7 @@ func (r *reader) readFaces() {
 				}
 			}
 		}
-		pr := r.processes[key(procName)]
+		pr := r.processes[Key(procName)]
 		if pr == nil {
 			f.course = r.exposure(l, &f.Exposure, 0)
 			if procName != "" && len(r.unread["Steps"]) == 0 {
@@ -39,7 +39,7 @@ func (r *reader) readFaces() {
 			}
 			continue
 		}
-		s := pr.by[key(stepName)]
+		s := pr.by[Key(stepName)]
 		if s == nil {
 			f.course = r.exposure(l, &f.Exposure, 0)
 			if stepName != "" {
@@ -48,10 +48,10 @@ func (r *reader) readFaces() {
 			r.concern(pr, prodName, l.because)
 			continue
 		}
-		p := r.byName[key(prodName)]
+		p := r.byName[Key(prodName)]
 		duration := s.DurationS
-		if p != nil && p.own[key(stepName)] != nil {
-			duration = p.own[key(stepName)].DurationS
+		if p != nil && p.own[Key(stepName)] != nil {
+			duration = p.own[Key(stepName)].DurationS
 		}
 		f.course = r.exposure(l, &f.Exposure, duration)
 		r.hang(l, pr, s, f, prodName)
@@ -61,13 +61,13 @@ func (r *reader) readFaces() {
 // astray refuses whom a row with an unknown process may concern: the product that it names, else the products of the process whose name
 // is near, else all of them.
 func (r *reader) astray(procName, prodName string, es cell.Errors) {
-	if p := r.byName[key(prodName)]; p != nil {
+	if p := r.byName[Key(prodName)]; p != nil {
 		p.suffer(es)
 		return
 	}
 	near := r.near(procName, r.processNames)
 	for _, p := range r.products {
-		if near == "" || key(p.Process) == key(near) {
+		if near == "" || Key(p.Process) == Key(near) {
 			p.suffer(es)
 		}
 	}
@@ -90,8 +90,8 @@ func (r *reader) hang(l *Line, pr *process, s *step, f *face, prodName string) {
 	if p.faces == nil {
 		p.faces = map[string][]*face{}
 	}
-	if !f.twice(p.faces[key(s.Name)]) && f.Face != nil {
-		p.faces[key(s.Name)] = append(p.faces[key(s.Name)], f)
+	if !f.twice(p.faces[Key(s.Name)]) && f.Face != nil {
+		p.faces[Key(s.Name)] = append(p.faces[Key(s.Name)], f)
 	}
 	p.suffer(l.because)
 }
@@ -109,11 +109,11 @@ func (f *face) twice(others []*face) bool {
 
 // concern refuses the products of a process, or the one that is named, for faults of a row.
 func (r *reader) concern(pr *process, prodName string, es cell.Errors) {
-	if p := r.byName[key(prodName)]; p != nil {
+	if p := r.byName[Key(prodName)]; p != nil {
 		p.suffer(es)
 		return
 	}
-	for _, p := range r.users[key(pr.name)] {
+	for _, p := range r.users[Key(pr.name)] {
 		p.suffer(es)
 	}
 }
@@ -128,7 +128,7 @@ func (p *product) facesOf(s *step, parts [][]echoes) ([]model.FaceExposure, [][]
 			parts = append(parts, f.course.readings)
 		}
 	}
-	own := p.faces[key(s.Name)]
+	own := p.faces[Key(s.Name)]
 	for _, f := range s.faces {
 		replaced := false
 		for _, o := range own {

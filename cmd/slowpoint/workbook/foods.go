@@ -48,10 +48,10 @@ func (r *reader) readFoods() {
 		if name == "" {
 			continue
 		}
-		f := r.foods[key(name)]
+		f := r.foods[Key(name)]
 		if f == nil {
 			f = &food{name: name}
-			r.foods[key(name)] = f
+			r.foods[Key(name)] = f
 			order = append(order, f)
 		}
 		f.lines = append(f.lines, fl)
@@ -139,7 +139,7 @@ func (f *food) agrees(l *foodLine) bool {
 			if o == l {
 				break
 			}
-			if o.Filled(h) && l.Filled(h) && key(o.Entry(h).Text) != key(l.Entry(h).Text) {
+			if o.Filled(h) && l.Filled(h) && Key(o.Entry(h).Text) != Key(l.Entry(h).Text) {
 				l.Fault(h, l.Entry(h).Text, foodUnlike, strconv.Itoa(o.row.N), o.Entry(h).Text)
 			}
 		}
@@ -240,12 +240,12 @@ func (f *food) measured() {
 
 // foodNamed finds a food: the plan's own first, then the built-in ones; nil if there is none.
 func (r *reader) foodNamed(name string) *food {
-	if f := r.foods[key(name)]; f != nil {
+	if f := r.foods[Key(name)]; f != nil {
 		return f
 	}
 	if m, ok := foods.Named(name); ok {
 		f := &food{name: m.Name, material: m}
-		r.foods[key(name)] = f
+		r.foods[Key(name)] = f
 		return f
 	}
 	return nil

@@ -9,17 +9,17 @@ import (
 
 // Grid is a sheet as it stands in the file, without any meaning.
 type Grid struct {
-	Name    string // as the user named it
-	Rows    []Row
-	Merged  []Block
-	Hidden  bool         // the whole sheet
+	Name       string // as the user named it
+	Rows       []Row
+	Merged     []Block
+	Hidden     bool         // the whole sheet
 	HiddenCols map[int]bool // hidden columns
-	words   []string     // that number formats show behind a number, as 0.0" cm" does
-	CSV     bool
-	commas  bool   // CSV whose cells are divided by commas
-	Is1904  bool   // its dates count from 1904
-	Refused string // why nothing in it can be used: goes into a fault of the whole sheet
-	Mend    string
+	words      []string     // that number formats show behind a number, as 0.0" cm" does
+	CSV        bool
+	commas     bool   // CSV whose cells are divided by commas
+	Is1904     bool   // its dates count from 1904
+	Refused    string // why nothing in it can be used: goes into a fault of the whole sheet
+	Mend       string
 }
 
 // Row is a row with at least one filled cell.
@@ -52,7 +52,7 @@ const (
 	Percent
 	Clock  // duration or time of day, in days
 	Date   // in days
-	Worded // and above: shows words behind the number, which are in grid.words
+	Worded // and above: shows words behind the number, which are in Grid.words
 )
 
 // Entry is one filled cell.
@@ -105,5 +105,5 @@ func seen(c rune) rune {
 	return c
 }
 
-// key makes a name comparable: without regard to case, blanks around it, or Unicode form.
-func key(s string) string { return strings.ToLower(tidy(s)) }
+// Key makes a name comparable: without regard to case, blanks around it, or Unicode form.
+func Key(s string) string { return strings.ToLower(tidy(s)) }

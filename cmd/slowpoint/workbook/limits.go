@@ -54,7 +54,7 @@ func (ls *limits) scope(name string, products []*product) *scope {
 			sc.unsure = sc.unsure || p.Steps[i].Stage == nil
 		}
 		for i := range p.Points {
-			k := key(p.Points[i].Name)
+			k := Key(p.Points[i].Name)
 			if sc.points[k] == nil {
 				sc.points[k] = &pointName{name: p.Points[i].Name}
 			}
@@ -108,7 +108,7 @@ func (r *reader) readLimits() {
 		return
 	}
 	for _, l := range t.lines {
-		ls.inLimits[key(l.Entry("Group").Text)] = true
+		ls.inLimits[Key(l.Entry("Group").Text)] = true
 	}
 	ls.checkGroups()
 	for _, l := range t.lines {
@@ -166,10 +166,10 @@ func (ls *limits) readTables() {
 		if name == "" {
 			continue
 		}
-		tt := ls.tables[key(name)]
+		tt := ls.tables[Key(name)]
 		if tt == nil {
 			tt = &timeTable{Table: rules.Table{At: l.Ref(), Name: name}}
-			ls.tables[key(name)] = tt
+			ls.tables[Key(name)] = tt
 		}
 		if at != nil && time != nil {
 			tt.against(l, at.Computed, time.Computed)
@@ -192,12 +192,12 @@ func (ls *limits) readGroups() {
 		if g.Name == "" {
 			continue
 		}
-		if first := ls.groups[key(g.Name)]; first != nil {
+		if first := ls.groups[Key(g.Name)]; first != nil {
 			l.Fault("Group", g.Name, duplicate, strconv.Itoa(first.At.Row), "group")
 			first.line.suffer(l.because)
 			continue
 		}
-		ls.groups[key(g.Name)] = g
+		ls.groups[Key(g.Name)] = g
 		ls.plan.Groups = append(ls.plan.Groups, g.Group)
 	}
 }
@@ -206,23 +206,23 @@ func (ls *limits) readGroups() {
 func (ls *limits) checkGroups() {
 	held := map[string]bool{}
 	for _, pg := range ls.plan.Groups {
-		held[key(pg.Within)] = true
+		held[Key(pg.Within)] = true
 	}
 	for _, pg := range ls.plan.Groups {
-		g := ls.groups[key(pg.Name)]
-		if !ls.inLimits[key(g.Name)] && !held[key(g.Name)] {
+		g := ls.groups[Key(pg.Name)]
+		if !ls.inLimits[Key(g.Name)] && !held[Key(g.Name)] {
 			g.line.Fault("Group", g.Name, groupEmpty)
 		}
 		if g.Within == "" {
 			continue
 		}
-		if ls.groups[key(g.Within)] == nil && !ls.inLimits[key(g.Within)] {
+		if ls.groups[Key(g.Within)] == nil && !ls.inLimits[Key(g.Within)] {
 			g.line.Fault("Within", g.Within, groupUnknown, ls.offer(g.Within, func() []string { return names(ls.plan.Groups, func(g rules.Group) string { return g.Name }) }))
 			continue
 		}
 		path := []string{g.Within}
-		for o := ls.groups[key(g.Within)]; o != nil; o = ls.groups[key(o.Within)] {
-			if key(o.Name) == key(g.Name) {
+		for o := ls.groups[Key(g.Within)]; o != nil; o = ls.groups[Key(o.Within)] {
+			if Key(o.Name) == Key(g.Name) {
 				g.line.Fault("Within", g.Within, groupCycle, strings.Join(path, ", "))
 				break
 			}
@@ -242,10 +242,10 @@ const mostDeep = 50
 func (ls *limits) read(l *Line) {
 	lim := rules.Limit{At: l.Ref(), Typed: map[string]string{}}
 	lim.Name = l.Words("Limit")
-	if first := ls.seen[key(lim.Name)]; first > 0 && lim.Name != "" {
+	if first := ls.seen[Key(lim.Name)]; first > 0 && lim.Name != "" {
 		l.Fault("Limit", lim.Name, duplicate, strconv.Itoa(first), "limit")
 	} else {
-		ls.seen[key(lim.Name)] = l.row.N
+		ls.seen[Key(lim.Name)] = l.row.N
 	}
 	if w := l.Choice("Rule"); w != "" {
 		lim.Kind = rules.Named(w)
@@ -264,7 +264,7 @@ func (ls *limits) read(l *Line) {
 	words := ls.citation(l, &lim)
 	aside := l.aside
 	if name := l.Words("Table"); name != "" {
-		if tt := ls.tables[key(name)]; tt == nil && len(ls.unread["Tables"]) > 0 {
+		if tt := ls.tables[Key(name)]; tt == nil && len(ls.unread["Tables"]) > 0 {
 			l.suffer(ls.unread["Tables"])
 		} else if tt == nil {
 			l.Fault("Table", name, tableUnknown, ls.offer(name, ls.tableNames))
@@ -272,15 +272,15 @@ func (ls *limits) read(l *Line) {
 			lim.Table = &tt.Table
 			l.suffer(tt.because)
 			aside = aside || tt.aside
-			sc.give("table "+key(name), tt.readings)
+			sc.give("table "+Key(name), tt.readings)
 		}
 	}
-	for g, n := ls.groups[key(lim.Group)], 0; lim.Group != "" && g != nil && n <= mostDeep; g, n = ls.groups[key(g.Within)], n+1 {
+	for g, n := ls.groups[Key(lim.Group)], 0; lim.Group != "" && g != nil && n <= mostDeep; g, n = ls.groups[Key(g.Within)], n+1 {
 		l.suffer(g.line.because)
 		aside = aside || g.line.aside
-		sc.give("group "+key(g.Name), g.line.readings)
+		sc.give("group "+Key(g.Name), g.line.readings)
 	}
-	if lim.Group != "" && ls.groups[key(lim.Group)] == nil {
+	if lim.Group != "" && ls.groups[Key(lim.Group)] == nil {
 		l.suffer(ls.unread["Groups"])
 	}
 	if lim.Kind != nil {
@@ -356,24 +356,24 @@ func (ls *limits) appliesTo(l *Line, lim *rules.Limit) *scope {
 	switch {
 	case typed == "" || ls.blind():
 		return ls.scope("", nil)
-	case key(typed) == "all":
+	case Key(typed) == "all":
 		lim.Applies.All = true
 		return ls.scope("all", ls.products)
-	case named && key(head) == "family":
-		ps := ls.families[key(family)]
-		if key(family) == "" || len(ps) == 0 {
+	case named && Key(head) == "family":
+		ps := ls.families[Key(family)]
+		if Key(family) == "" || len(ps) == 0 {
 			l.Fault("Applies to", typed, familyUnknown, ls.offer(family, ls.familyNames))
 			return ls.scope("", nil)
 		}
 		lim.Applies.Family = ps[0].Family
-		return ls.scope("family "+key(family), ps)
+		return ls.scope("family "+Key(family), ps)
 	}
-	if p := ls.byName[key(typed)]; p != nil {
+	if p := ls.byName[Key(typed)]; p != nil {
 		lim.Applies.Product = p.Name
-		return ls.scope("product "+key(typed), []*product{p})
+		return ls.scope("product "+Key(typed), []*product{p})
 	}
 	hint := ls.offer(typed, func() []string { return append([]string{"all"}, ls.productNames()...) })
-	if ps := ls.families[key(typed)]; len(ps) > 0 {
+	if ps := ls.families[Key(typed)]; len(ps) > 0 {
 		hint = "; did you mean family: " + ps[0].Family + "?"
 	}
 	l.Fault("Applies to", typed, appliesUnknown, hint)
@@ -400,7 +400,7 @@ func (ls *limits) stages(l *Line, lim *rules.Limit, sc *scope) {
 	}
 	named := func(word string) *model.Stage {
 		for _, s := range model.Stages {
-			if key(word) == key(s.Name) || s.Also != "" && key(word) == key(s.Also) {
+			if Key(word) == Key(s.Name) || s.Also != "" && Key(word) == Key(s.Also) {
 				return s
 			}
 		}
@@ -446,7 +446,7 @@ func (ls *limits) where(l *Line, lim *rules.Limit, sc *scope) {
 		return
 	}
 	for _, w := range whereWords {
-		if key(w) == key(typed) {
+		if Key(w) == Key(typed) {
 			lim.Where.Name = w
 			return
 		}
@@ -455,7 +455,7 @@ func (ls *limits) where(l *Line, lim *rules.Limit, sc *scope) {
 	if len(sc.products) == 0 {
 		return // nobody knows whose point it would be
 	}
-	switch pt := sc.points[key(typed)]; {
+	switch pt := sc.points[Key(typed)]; {
 	case pt == nil && len(ls.unread["Points"]) > 0:
 		l.suffer(ls.unread["Points"])
 	case pt == nil:
@@ -470,7 +470,7 @@ func (ls *limits) where(l *Line, lim *rules.Limit, sc *scope) {
 	default:
 		lim.Where.Name = pt.name
 		if pt.n < len(sc.products) {
-			l.Remark(cell.Warning, "Where", typed, whereLacking, sc.without(key(typed)))
+			l.Remark(cell.Warning, "Where", typed, whereLacking, sc.without(Key(typed)))
 		}
 	}
 }
@@ -508,7 +508,7 @@ func clockOf(l *Line, lim *rules.Limit) (c rules.Clock) {
 	if typed == "" {
 		return c
 	}
-	k := key(typed)
+	k := Key(typed)
 	head, name, event := strings.Cut(k, ":")
 	at, ofN := strings.CutPrefix(k, "crossing of ")
 	switch {

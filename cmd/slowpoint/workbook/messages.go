@@ -209,10 +209,10 @@ func nearest(word string, known []string) string {
 	if len(word) > 200 {
 		return ""
 	}
-	w := []rune(key(word))
+	w := []rune(Key(word))
 	best, least := "", 1+len(w)/3
 	for _, k := range known {
-		kk := []rune(key(k))
+		kk := []rune(Key(k))
 		if d := len(kk) - len(w); d > least || -d > least {
 			continue
 		}

@@ -50,7 +50,7 @@ func (r *reader) readProducts() {
 		p := &product{line: l}
 		p.At = l.Ref()
 		p.Name = l.Words("Product")
-		if first := r.byName[key(p.Name)]; p.Name != "" && first != nil {
+		if first := r.byName[Key(p.Name)]; p.Name != "" && first != nil {
 			l.Fault("Product", p.Name, duplicate, strconv.Itoa(first.At.Row), "product")
 		}
 		p.Family, p.RecipeVersion, p.Batch = l.Words("Family"), l.Words("Recipe version"), l.Words("Batch")
@@ -63,10 +63,10 @@ func (r *reader) readProducts() {
 		p.Note = l.Words("Note")
 		p.because = l.because
 		r.products = append(r.products, p)
-		r.users[key(p.Process)] = append(r.users[key(p.Process)], p)
-		r.families[key(p.Family)] = append(r.families[key(p.Family)], p)
-		if p.Name != "" && r.byName[key(p.Name)] == nil {
-			r.byName[key(p.Name)] = p
+		r.users[Key(p.Process)] = append(r.users[Key(p.Process)], p)
+		r.families[Key(p.Family)] = append(r.families[Key(p.Family)], p)
+		if p.Name != "" && r.byName[Key(p.Name)] == nil {
+			r.byName[Key(p.Name)] = p
 		}
 	}
 }
@@ -150,26 +150,26 @@ func (r *reader) readPoints() {
 				l.note(axis.heading, "", "0 m", "blank: 0 is taken")
 			}
 		}
-		p := r.byName[key(owner)]
+		p := r.byName[Key(owner)]
 		if p == nil {
 			if owner != "" && !r.blind() {
 				l.Fault("Product", owner, productUnknown, r.offer(owner, r.productNames))
 			}
 			continue
 		}
-		builtIn := key(name) == "centre"
+		builtIn := Key(name) == "centre"
 		switch {
 		case builtIn && pt.Place != (model.Place{}):
 			l.Fault("Point", name, pointCentre)
-		case p.points[key(name)] > 0:
-			l.Fault("Point", name, pointTwice, strconv.Itoa(p.points[key(name)]))
+		case p.points[Key(name)] > 0:
+			l.Fault("Point", name, pointTwice, strconv.Itoa(p.points[Key(name)]))
 		case p.Shape == model.Stirred && !builtIn:
 			l.Fault("Point", name, pointStirred)
 		}
 		if p.points == nil {
 			p.points = map[string]int{}
 		}
-		p.points[key(name)] = l.row.N
+		p.points[Key(name)] = l.row.N
 		if !builtIn {
 			p.Points = append(p.Points, pt)
 		}

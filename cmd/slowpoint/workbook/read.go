@@ -20,35 +20,9 @@ import (
 // The error says in one sentence why nothing at all could be understood as a plan; everything else that is wrong is in Plan.Problems,
 // and sound products are in Plan.Products whatever else is wrong.
 func Read(name string) (*Plan, error) {
-	info, err := os.Stat(name)
-	switch {
-	case errors.Is(err, os.ErrNotExist):
-		return nil, fmt.Errorf("%s: there is no such file or folder; look at the spelling of its name", name)
-	case err != nil:
-		return nil, fmt.Errorf("%s: it cannot be opened (%s)", name, reason(err))
-	}
-	if !info.IsDir() && !info.Mode().IsRegular() {
-		return nil, fmt.Errorf("%s: it is neither a file nor a folder", name)
-	}
-	var grids []*Grid
-	digest := ""
-	if info.IsDir() {
-		if grids, digest, err = readFolder(name); err != nil {
-			return nil, err
-		}
-	} else {
-		if info.Size() > mostFile {
-			return nil, fmt.Errorf("%s: the file is larger than %d MB, too large for a plan; take out pictures and sheets that do not belong to it, or divide it into several", name, mostFile>>20)
-		}
-		data, err := os.ReadFile(name)
-		if err != nil {
-			return nil, fmt.Errorf("%s: it cannot be read (%s)", name, reason(err))
-		}
-		sum := sha256.Sum256(data)
-		digest = hex.EncodeToString(sum[:])
-		if grids, err = readWorkbook(data); err != nil {
-			return nil, fmt.Errorf("%s: %w", name, err)
-		}
+	grids, digest, err := load(name, "plan")
+	if err != nil {
+		return nil, err
 	}
 	p, err := understand(grids, &Plan{Name: filepath.Base(filepath.Clean(name)), SHA256: digest})
 	if err != nil {
@@ -57,9 +31,47 @@ func Read(name string) (*Plan, error) {
 	return p, nil
 }
 
+// load reads the sheets of a workbook, or of a folder of CSV files; what says which of our files it is, for the messages.
+func load(name, what string) (grids []*Grid, digest string, err error) {
+	info, err := os.Stat(name)
+	switch {
+	case errors.Is(err, os.ErrNotExist):
+		return nil, "", fmt.Errorf("%s: there is no such file or folder; look at the spelling of its name", name)
+	case err != nil:
+		return nil, "", fmt.Errorf("%s: it cannot be opened (%s)", name, reason(err))
+	}
+	if !info.IsDir() && !info.Mode().IsRegular() {
+		return nil, "", fmt.Errorf("%s: it is neither a file nor a folder", name)
+	}
+	if info.IsDir() {
+		return readFolder(name)
+	}
+	data, digest, err := readFile(name, info.Size(), what)
+	if err != nil {
+		return nil, "", err
+	}
+	if grids, err = readWorkbook(data); err != nil {
+		return nil, "", fmt.Errorf("%s: %w", name, err)
+	}
+	return grids, digest, nil
+}
+
+// readFile reads a file and its digest.
+func readFile(name string, size int64, what string) (data []byte, digest string, err error) {
+	if size > mostFile {
+		return nil, "", fmt.Errorf("%s: the file is larger than %d MB, too large for a %s; take out pictures and sheets that do not belong to it, or divide it into several", name, mostFile>>20, what)
+	}
+	if data, err = os.ReadFile(name); err != nil {
+		return nil, "", fmt.Errorf("%s: it cannot be read (%s)", name, reason(err))
+	}
+	sum := sha256.Sum256(data)
+	return data, hex.EncodeToString(sum[:]), nil
+}
+
 // reader is a plan while it is read.
 type reader struct {
 	plan     *Plan
+	list     []*Sheet          // the sheets there may be
 	tables   map[string]*table // by the name in Sheets
 	grids    map[string]*Grid
 	unread   map[string]cell.Errors // why a sheet, or a part of it, could not be read
@@ -114,19 +126,19 @@ func (f *formulas) count(at cell.Ref) {
 	f.last = at
 }
 
-// sheets sorts the grids out: which sheet of a plan each is, and which decimal sign the whole file shows.
-func (r *reader) sheets(grids []*Grid) error {
+// sheets sorts the grids out: which sheet of the list each is.
+func (r *reader) sheets(grids []*Grid) {
 	r.grids, r.tables, r.ignore = map[string]*Grid{}, map[string]*table{}, map[string]bool{}
 	inOrder := append([]*Grid(nil), grids...)
 	sort.SliceStable(inOrder, func(i, j int) bool { // files have no order of their own
-		return grids[0].CSV && rank(inOrder[i].Name) < rank(inOrder[j].Name)
+		return grids[0].CSV && rank(r.list, inOrder[i].Name) < rank(r.list, inOrder[j].Name)
 	})
 	for _, g := range inOrder {
 		r.plan.Sheets = append(r.plan.Sheets, g.Name)
 	}
-	known := names(Sheets, func(s *Sheet) string { return s.Name })
+	known := names(r.list, func(s *Sheet) string { return s.Name })
 	for _, g := range grids {
-		s := sheetOf(g.Name)
+		s := sheetOf(r.list, g.Name)
 		at := cell.Ref{Sheet: g.Name}
 		switch {
 		case g.Hidden:
@@ -145,6 +157,10 @@ func (r *reader) sheets(grids []*Grid) error {
 			r.grids[s.Name] = g
 		}
 	}
+}
+
+// isPlan tells, in one sentence, why the sheets are no plan.
+func (r *reader) isPlan() error {
 	if r.grids["Products"] == nil {
 		var got []string
 		for i, name := range r.plan.Sheets {
@@ -159,14 +175,14 @@ func (r *reader) sheets(grids []*Grid) error {
 	return nil
 }
 
-// rank is the place of a sheet in the list Sheets; unknown ones come last.
-func rank(name string) int {
-	for i, s := range Sheets {
-		if key(s.Name) == key(name) {
+// rank is the place of a sheet in a list; unknown ones come last.
+func rank(list []*Sheet, name string) int {
+	for i, s := range list {
+		if Key(s.Name) == Key(name) {
 			return i
 		}
 	}
-	return len(Sheets)
+	return len(list)
 }
 
 // blind tells whether no product could be read at all: then nothing can be held against their names.
@@ -272,7 +288,7 @@ func (r *reader) planItems() {
 		for _, i := range PlanItems {
 			name, _ := SplitHeading(i)
 			typed, _ := SplitHeading(item)
-			if key(name) == key(typed) {
+			if Key(name) == Key(typed) {
 				known = i
 			}
 		}
@@ -312,7 +328,7 @@ func (r *reader) ofAll(l *Line, item string) {
 func (r *reader) planItem(l *Line, known, item, value string) {
 	choice := func() string {
 		for _, c := range planChoices[known] {
-			if key(c) == key(value) {
+			if Key(c) == Key(value) {
 				return c
 			}
 		}
@@ -342,7 +358,7 @@ func (r *reader) planItem(l *Line, known, item, value string) {
 		choice()
 	case "Ignore columns":
 		for _, c := range strings.FieldsFunc(value, func(c rune) bool { return c == ',' || c == ';' }) {
-			r.ignore[key(c)] = true
+			r.ignore[Key(c)] = true
 		}
 	}
 }
@@ -354,7 +370,7 @@ func (r *reader) decimalSign() {
 	}
 	var first [3]cell.Ref
 	var typed [3]string
-	for _, s := range Sheets {
+	for _, s := range r.list {
 		g := r.grids[s.Name]
 		if g == nil || g.Refused != "" {
 			continue
@@ -403,7 +419,7 @@ func (r *reader) notYet() {
 			switch s.Name {
 			case "Layers":
 				name := l.Words("Product")
-				p := r.byName[key(name)]
+				p := r.byName[Key(name)]
 				if p == nil {
 					if name != "" && !r.blind() {
 						l.Fault("Product", name, productUnknown, r.offer(name, r.productNames))
@@ -442,12 +458,12 @@ func (r *reader) notYet() {
 // matching finds the products that a name means: all, a family, a product, a process or process/step. With two words both must match.
 func (r *reader) matching(word, processName string) []*product {
 	var out []*product
-	w := key(word)
+	w := Key(word)
 	w = strings.TrimSpace(strings.TrimPrefix(w, "family:"))
 	for _, p := range r.products {
 		proc, _, _ := strings.Cut(w, "/")
-		hit := w == "" && processName != "" || w == "all" || w != "" && (w == key(p.Name) || w == key(p.Family) || strings.TrimSpace(proc) == key(p.Process))
-		if hit && (processName == "" || key(processName) == key(p.Process)) {
+		hit := w == "" && processName != "" || w == "all" || w != "" && (w == Key(p.Name) || w == Key(p.Family) || strings.TrimSpace(proc) == Key(p.Process))
+		if hit && (processName == "" || Key(processName) == Key(p.Process)) {
 			out = append(out, p)
 		}
 	}

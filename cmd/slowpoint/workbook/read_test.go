@@ -328,12 +328,12 @@ func TestColumns(t *testing.T) {
 		seen := map[string]bool{}
 		for _, c := range s.Columns {
 			switch {
-			case seen[key(c.Heading)]:
+			case seen[Key(c.Heading)]:
 				t.Errorf("%s: %s twice", s.Name, c.Heading)
 			case c.Quantity == nil && c.Unit != "", c.Quantity != nil && !c.Quantity.Plain() && c.Quantity.Unit(c.Unit) == nil:
 				t.Errorf("%s: unit of %s", s.Name, c.Title())
 			}
-			seen[key(c.Heading)] = true
+			seen[Key(c.Heading)] = true
 			if name, _ := SplitHeading(c.Title()); name != c.Heading {
 				t.Errorf("%s: %q comes back as %q", s.Name, c.Title(), name)
 			}

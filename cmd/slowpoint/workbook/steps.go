@@ -41,7 +41,7 @@ func (r *reader) readSteps() {
 			continue
 		}
 		pr := r.process(procName)
-		pr.used = users[key(procName)] != nil
+		pr.used = users[Key(procName)] != nil
 		if !pr.used && !r.blind() {
 			near := r.near(procName, func() []string { return names(r.products, func(p *product) string { return p.Process }) })
 			offer := ""
@@ -51,14 +51,14 @@ func (r *reader) readSteps() {
 			l.Fault("Process", procName, processUnused, offer)
 			switch {
 			case near != "": // a misspelt row would be missing from its chain
-				for _, p := range users[key(near)] {
+				for _, p := range users[Key(near)] {
 					p.suffer(l.because)
 				}
 			case r.offers > mostOffers && len(r.unread["Steps"]) == 0: // nobody looks any more whose rows these are
 				r.unread["Steps"] = l.because
 			}
 		}
-		k := key(s.Name)
+		k := Key(s.Name)
 		if prodName != "" {
 			r.stepOfProduct(l, pr, s, prodName)
 			continue
@@ -96,10 +96,10 @@ func (pr *process) stepNames() []string {
 }
 
 func (r *reader) process(name string) *process {
-	pr := r.processes[key(name)]
+	pr := r.processes[Key(name)]
 	if pr == nil {
 		pr = &process{name: name, by: map[string]*step{}}
-		r.processes[key(name)] = pr
+		r.processes[Key(name)] = pr
 		r.order = append(r.order, pr)
 	}
 	return pr
@@ -111,7 +111,7 @@ func (r *reader) orphan(t *table, i int, users map[string][]*product) {
 	for _, way := range []int{-1, 1} {
 		for j := i + way; j >= 0 && j < len(t.lines) && (j-i)*way <= 100; j += way {
 			if e := t.lines[j].row.at(h.col); e.Kind != Blank {
-				for _, p := range users[key(e.Text)] {
+				for _, p := range users[Key(e.Text)] {
 					p.suffer(t.lines[i].because)
 				}
 				break
@@ -122,12 +122,12 @@ func (r *reader) orphan(t *table, i int, users map[string][]*product) {
 
 // productOf finds the product that a row of a process names, and says so where there is none or where it goes through another process.
 func (r *reader) productOf(l *Line, pr *process, name string) *product {
-	p := r.byName[key(name)]
+	p := r.byName[Key(name)]
 	switch {
 	case p == nil:
 		l.Fault("Product", name, productUnknown, r.offer(name, r.productNames))
 		r.concern(pr, "", l.because) // whose row it is is not known: without it any product of the process may be wrong
-	case key(p.Process) != key(pr.name):
+	case Key(p.Process) != Key(pr.name):
 		l.Fault("Product", name, otherProcess, strconv.Quote(p.Process))
 	}
 	return p
@@ -139,13 +139,13 @@ func (r *reader) stepOfProduct(l *Line, pr *process, s *step, name string) {
 	if p == nil {
 		return
 	}
-	if first := p.own[key(s.Name)]; first != nil && key(p.Process) == key(pr.name) {
+	if first := p.own[Key(s.Name)]; first != nil && Key(p.Process) == Key(pr.name) {
 		l.Fault("Step", s.Name, stepTwice, pr.name+" for this product", strconv.Itoa(first.At.Row))
 	}
 	if p.own == nil {
 		p.own = map[string]*step{}
 	}
-	p.own[key(s.Name)] = s
+	p.own[Key(s.Name)] = s
 	p.suffer(l.because)
 }
 
@@ -171,7 +171,7 @@ func (r *reader) readStep(l *Line) *step {
 func (l *Line) stage(heading string) *model.Stage {
 	e := l.Entry(heading)
 	for _, s := range model.Stages {
-		if e.Kind == Text && (key(e.Text) == key(s.Name) || s.Also != "" && key(e.Text) == key(s.Also)) {
+		if e.Kind == Text && (Key(e.Text) == Key(s.Name) || s.Also != "" && Key(e.Text) == Key(s.Also)) {
 			l.note(heading, e.Text, s.Name, "")
 			return s
 		}
@@ -185,7 +185,7 @@ func (l *Line) stage(heading string) *model.Stage {
 
 // refused tells whether a word names a process that conduction does not describe, and says so.
 func (l *Line) refused(heading, typed string) bool {
-	words := strings.FieldsFunc(key(typed), func(c rune) bool { return !('a' <= c && c <= 'z') })
+	words := strings.FieldsFunc(Key(typed), func(c rune) bool { return !('a' <= c && c <= 'z') })
 	said := " " + strings.Join(words, " ") + " "
 	for _, no := range model.Refusals {
 		for _, w := range strings.Split(no.Words, ", ") {
@@ -266,7 +266,7 @@ func (r *reader) medium(l *Line, x *model.Exposure, durationS float64) *course {
 	case typed != nil:
 		x.Medium = model.Course{TimesS: []float64{0}, C: []float64{typed.Computed}}
 	case name != "":
-		c := r.courses[key(name)]
+		c := r.courses[Key(name)]
 		if c == nil && len(r.unread["Courses"]) > 0 {
 			l.suffer(r.unread["Courses"])
 			return nil

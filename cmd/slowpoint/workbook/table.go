@@ -57,18 +57,6 @@ func SplitHeading(s string) (name, inBrackets string) {
 	return s, ""
 }
 
-// byKey finds the columns of a sheet by the key of their headings.
-var byKey = func() map[*Sheet]map[string]*Column {
-	all := map[*Sheet]map[string]*Column{}
-	for _, s := range Sheets {
-		all[s] = map[string]*Column{}
-		for _, c := range s.Columns {
-			all[s][key(c.Heading)] = c
-		}
-	}
-	return all
-}()
-
 // headings finds the columns of a sheet that a row names; the first of two equal ones.
 func headings(s *Sheet, row *Row) map[string]*head {
 	var found map[string]*head
@@ -77,7 +65,7 @@ func headings(s *Sheet, row *Row) map[string]*head {
 			continue
 		}
 		name, _ := SplitHeading(row.Cells[i].Text)
-		if c := byKey[s][key(name)]; c != nil && found[c.Heading] == nil {
+		if c := s.known(Key(name)); c != nil && found[c.Heading] == nil {
 			if found == nil {
 				found = map[string]*head{}
 			}
@@ -124,7 +112,7 @@ func (r *reader) open(g *Grid, s *Sheet) *table {
 	if !whole {
 		r.missingHeadings(t, t.place)
 	}
-	if first > 0 && !(first == 1 && len(g.Rows[0].Cells) == 1 && key(g.Rows[0].Cells[0].Text) == key(s.Help)) {
+	if first > 0 && !(first == 1 && len(g.Rows[0].Cells) == 1 && Key(g.Rows[0].Cells[0].Text) == Key(s.Help)) {
 		what := fmt.Sprintf("Row %d stands", g.Rows[0].N)
 		if first > 1 {
 			what = fmt.Sprintf("Rows %d to %d stand", g.Rows[0].N, g.Rows[first-1].N)
@@ -193,12 +181,12 @@ func (r *reader) headings(t *table, top *Row) (own map[int]bool) {
 		e := &top.Cells[i]
 		name, inside := SplitHeading(e.Text)
 		at := t.ref(top.N, int(e.Col))
-		if strings.HasPrefix(e.Text, "#") && e.Kind == Text || r.ignore[key(e.Text)] || r.ignore[key(name)] {
+		if strings.HasPrefix(e.Text, "#") && e.Kind == Text || r.ignore[Key(e.Text)] || r.ignore[Key(name)] {
 			own[int(e.Col)] = true
 			continue
 		}
 		var h *head
-		if c := byKey[t.sheet][key(name)]; c != nil {
+		if c := t.sheet.known(Key(name)); c != nil {
 			h = t.place[c.Heading]
 		}
 		switch {
@@ -556,7 +544,7 @@ func (l *Line) Choice(heading string) string {
 		return ""
 	}
 	for _, w := range c.Choices {
-		if key(w) == key(e.Text) {
+		if Key(w) == Key(e.Text) {
 			l.note(heading, e.Text, w, "")
 			return w
 		}
@@ -603,7 +591,7 @@ func (l *Line) Value(heading string) *unit.Value {
 // likely holds a number against what is usual and what is possible; false if it cannot be.
 func (l *Line) likely(c *Column, v unit.Value) bool {
 	usual, slip := c.Usual, ""
-	if c.OfMedium != nil && key(l.Entry("Where").Text) == "medium" {
+	if c.OfMedium != nil && Key(l.Entry("Where").Text) == "medium" {
 		usual = c.OfMedium
 	}
 	if strings.HasSuffix(v.Typed, spaced(c.Unit)) {

@@ -13,8 +13,9 @@ import (
 
 // understand fills a plan, of which name and digest are known, from its sheets. A workbook, a folder and the demo all come this way.
 func understand(grids []*Grid, p *Plan) (*Plan, error) {
-	r := newReader(p)
-	if err := r.sheets(grids); err != nil {
+	r := newReader(p, Sheets)
+	r.sheets(grids)
+	if err := r.isPlan(); err != nil {
 		return nil, err
 	}
 	r.read()
@@ -22,9 +23,9 @@ func understand(grids []*Grid, p *Plan) (*Plan, error) {
 }
 
 // newReader is a reader that has read nothing yet.
-func newReader(p *Plan) *reader {
+func newReader(p *Plan, list []*Sheet) *reader {
 	p.Columns = map[string]map[string]int{}
-	return &reader{plan: p, formulas: map[cell.Ref]*formulas{}, unread: map[string]cell.Errors{}}
+	return &reader{plan: p, list: list, formulas: map[cell.Ref]*formulas{}, unread: map[string]cell.Errors{}}
 }
 
 // readFiles takes every .csv file of a folder, wherever it is kept, as a sheet, in the order of their names, and the digest of them all.
