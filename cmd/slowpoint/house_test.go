@@ -24,7 +24,8 @@ var order = map[string]struct{ ours, others string }{
 	"rules/codes":            {"rules model model/cell", "gonum.org/v1/gonum"},
 	"report":                 {"model model/cell model/unit rules", "github.com/jung-kurt/gofpdf gonum.org/v1/plot github.com/xuri/excelize codeberg.org/go-fonts/dejavu golang.org/x/text golang.org/x/image"},
 	"cmd/slowpoint/workbook": {"model model/cell model/unit model/food rules", "github.com/xuri/excelize golang.org/x/text"},
-	"cmd/slowpoint": {"model model/cell model/unit model/food model/verify rules rules/codes report cmd/slowpoint/workbook",
+	"cmd/slowpoint/intake":   {"model model/cell model/unit model/food rules cmd/slowpoint/workbook", "github.com/xuri/excelize golang.org/x/text"},
+	"cmd/slowpoint": {"model model/cell model/unit model/food model/verify rules rules/codes report cmd/slowpoint/workbook cmd/slowpoint/intake",
 		"github.com/spf13/cobra github.com/schollz/progressbar golang.org/x/term"},
 }
 
