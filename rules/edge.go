@@ -45,12 +45,16 @@ func (v *view) edges(s scope, q question, cs []candidate) []model.Place {
 	if !v.l.clocked() || v.h.Recorded || len(s.spots) == 0 {
 		return nil
 	}
+	ws := v.windows()
+	if len(ws) == 1 && !v.patchy { // every place counts
+		return nil
+	}
 	within := make([]bool, len(v.c.spots))
 	for _, i := range s.spots {
 		within[i] = true
 	}
 	var found []model.Place
-	for _, w := range v.windows() {
+	for _, w := range ws {
 		pk := v.peaks(s.spots, w)
 		slid := false
 		for n, level := range []float64{v.l.crossedC(), v.l.crossedC() - v.errK} {
