@@ -9,7 +9,7 @@ import (
 
 // A clock that starts at a crossing runs only at the places that were ever above the temperature crossed: part of the food, with
 // an edge. A place just within that edge was there for a moment only and starts its clock at its peak, before its neighbours
-// further out fall to the crossing. So the time taken grows towards the edge, with an infinite slope, and its supremum over the
+// on the warmer side fall to the crossing. So the time taken grows towards the edge, with an infinite slope, and its supremum over the
 // places that count is the limit at the edge. That supremum is the value: the place named, its value and its verdict are those of
 // a place whose peak is edgeK above the crossing, as near to the limit as the numbers go.
 
@@ -17,8 +17,9 @@ import (
 // tell apart. For a chill of an hour it shortens the time by about a second.
 const edgeK = 1e-5
 
-// mostEdges is how many edges of a window are followed exactly: the worst by a first look at all.
-const mostEdges = 3
+// mostEdges is how many edges of a window are followed exactly, each way along each axis: the worst by a first look at all. The
+// first look is too rough to compare one axis with another.
+const mostEdges = 2
 
 // edge is a crossing of the edge between two neighbours along an axis: one counts in a window, the other does not.
 type edge struct {
@@ -138,11 +139,22 @@ func (v *view) paired(pk peaks, within []bool, w window, level float64, t tilt, 
 		}
 	}
 	sort.SliceStable(es, func(a, b int) bool { return worse(es[a].first, es[b].first) })
-	return es[:min(len(es), mostEdges)]
+	var few []edge
+	taken := map[[2]int]int{}
+	for _, e := range es {
+		way := [2]int{e.axis, 1}
+		if e.out[e.axis] < e.in[e.axis] {
+			way[1] = -1
+		}
+		if taken[way]++; taken[way] <= mostEdges {
+			few = append(few, e)
+		}
+	}
+	return few
 }
 
 // plainly is by what share of the value the first look at an edge may err: less favourable than that is worth following.
-const plainly = 0.1
+const plainly = 0.2
 
 // blend mixes the scanned courses of two spots (share of the first), moved so that the peak in a window just exceeds a level.
 func (c *courses) blend(i, k int, share float64, w window, level float64) path {

@@ -237,3 +237,42 @@ func TestClockAtTheEdgeOfACylinder(t *testing.T) {
 		})
 	}
 }
+
+// In a brick the edge is a surface that crosses every axis: no place on it, found by bisection on lines along each, takes longer.
+func TestClockAtTheEdgeOfABrick(t *testing.T) {
+	half := [3]float64{0.0859 / 2, 0.1398 / 2, 0.2393 / 2}
+	h := solve(t, model.Brick, model.Size{ThicknessM: 2 * half[0], WidthM: 2 * half[1], LengthM: 2 * half[2]}, 3.4,
+		filmStep(model.Cook, 90, 100, 25), filmStep(model.Rest, 15, 21, 8), filmStep(model.Cool, 320, 2, 30))
+	took := func(x [3]float64) float64 {
+		v, _ := readEvery(h, model.Place{UpM: x[0], AcrossM: x[1], AlongM: x[2]}, 30).fall(60, 10, math.NaN(), 0, h.EndS())
+		return v
+	}
+	longest, edges := 0.0, [3]int{}
+	for axis := range half {
+		for n := 0; n < 16; n++ {
+			a, b := (axis+1)%3, (axis+2)%3
+			at := func(s float64) (x [3]float64) {
+				x[axis], x[a], x[b] = s*half[axis], float64(n/4)/4*half[a], float64(n%4)/4*half[b]
+				return x
+			}
+			out, in := 0.0, 1.0
+			if !math.IsNaN(took(at(out))) || math.IsNaN(took(at(in))) {
+				continue
+			}
+			for in-out > 1e-6 {
+				if m := (in + out) / 2; math.IsNaN(took(at(m))) {
+					out = m
+				} else {
+					in = m
+				}
+			}
+			edges[axis]++
+			longest = math.Max(longest, took(at(in)))
+		}
+	}
+	if edges[0] == 0 || edges[1] == 0 || edges[2] == 0 {
+		t.Fatalf("%d edges: the case does not show what it should", edges)
+	}
+	f := one(t, Limit{Kind: CoolWithin, FromC: c(60), ToC: c(10), TimeS: min_(150), Clock: crossing}, h)
+	closeTo(t, "value", f.Value, longest, 0.3)
+}
