@@ -53,6 +53,7 @@ func (l Level) String() string { return [...]string{"error", "warning", "note"}[
 // Error is one thing wrong in the input: where, what was typed, what was expected, how to mend it.
 type Error struct {
 	At    Ref
+	From  string // the cell of the user's own spreadsheet that the import took it from, "Recipes.xlsx › Cook-chill!F17"; "" if none is known
 	Level Level
 	Field string // the column heading without its unit, so that whoever knows the sheet can find the cell
 	Typed string // as it stood in the cell; "" for a blank
@@ -60,9 +61,20 @@ type Error struct {
 	Hint  string // how to mend it
 }
 
+// Where writes the place, and behind it in brackets where it comes from: "Products!C7 (Recipes.xlsx › Cook-chill!F17)".
+func (e Error) Where() string { return where(e.At, e.From) }
+
+// where writes a place and where it comes from, as far as they are known.
+func where(at Ref, from string) string {
+	if from == "" || at.IsZero() {
+		return at.String()
+	}
+	return at.String() + " (" + from + ")"
+}
+
 // Error makes one line of the problem.
 func (e Error) Error() string {
-	s := e.At.String()
+	s := e.Where()
 	if s != "" {
 		s += ": "
 	}
@@ -118,11 +130,15 @@ func (es Errors) Sort(sheets []string) {
 // Reading is one value as it was taken from the plan: the input echo.
 type Reading struct {
 	At     Ref
+	From   string // as in Error
 	Column string // heading without unit
 	Typed  string // as typed, with the unit that the heading or the cell gave; "" where a default stood in for a blank
 	Used   string // what the program computes with, in SI or °C
 	Why    string // for a default: why this value stands in; "" otherwise
 }
+
+// Where writes the place of the value, as that of a problem.
+func (r Reading) Where() string { return where(r.At, r.From) }
 
 // Error makes Errors an error: one line a problem.
 func (es Errors) Error() string {

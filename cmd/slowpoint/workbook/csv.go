@@ -59,6 +59,9 @@ func csvGrid(name string, data []byte) *Grid {
 		data = bytes.ReplaceAll(data, []byte("\r"), []byte("\n"))
 	}
 	sheet := sheetOf(Sheets, g.Name)
+	if sheet == nil {
+		sheet = sheetOf(MadeSheets, g.Name)
+	}
 	best, score := ',', -1
 	for _, d := range []rune{',', ';', '\t'} {
 		if n := likeness(sheet, data, d); n > score {

@@ -34,6 +34,12 @@ var (
 	csvUnreadable = saying{"The file cannot be read as CSV: {1}", "{2}"}
 	notUTF8       = saying{"The file is not in UTF-8 ({1})", "save it as CSV UTF-8"}
 
+	// sheets that the import makes
+	originsDamaged  = saying{"{1}, so where some values come from cannot be told{2}", "the plan is calculated all the same; import again to have the sheet made anew"}
+	madeHeadless    = saying{"The sheet was made by the import and has no longer a row with all its headings ({1}); it cannot be used", "the plan is calculated all the same; import again to have the sheet made anew"}
+	fromDamaged     = saying{"leads to no origin: it is not as the import wrote it, or the sheet Origins does not know it{1}", "the row is calculated all the same; import again to have it made anew"}
+	rowsNotImported = saying{"{1} of the spreadsheets {2} not imported; see the sheet {3}", "mend them in the spreadsheets and import again"}
+
 	// rows and cells
 	keyMissing     = saying{"stands in a row without {1} and belongs to nothing", "fill the row, clear it, or put a # in front of the heading if the column is your own"}
 	missing        = saying{"{1} is missing", "{2}"}
@@ -62,6 +68,7 @@ var (
 	decimalMixed   = saying{"shows a decimal {1}, but {2} shows a decimal {3}", "use one decimal sign throughout, or fill the item Decimal sign of the sheet Plan"}
 	readByEvidence = saying{"is read as {1}, because {3} shows that the decimal sign is the {2}", "type it without a sign between thousands, or fill the item Decimal sign of the sheet Plan"}
 	asFound        = saying{"{1}", "{2}"} // the words come from model/unit, model/food or rules
+	numberNoUnit   = saying{"has no unit, and its heading gives none", "put the unit in brackets after the heading or behind the number: {1}"}
 	plainHeading   = saying{"is a plain number, without a unit", "write {1} alone"}
 	notNumber      = saying{"is not a number", "type {1}"}
 	notClock       = saying{"is not in the form {1} that the heading announces", "give the cell the number format [h]:mm or [mm]:ss, or change the unit of the heading"}

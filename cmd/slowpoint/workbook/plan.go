@@ -19,6 +19,7 @@ type Product struct {
 	Steps                                       []model.Step // shared by the products of a process; do not change it
 	Family, RecipeVersion, Batch, Process, Note string
 	readings                                    [][]echoes // each part is shared by all products that use it
+	origins                                     *origins   // the plan's
 }
 
 // Readings is everything typed or defaulted that the product uses: its own row, its food, points, steps, faces, courses, then the
@@ -36,6 +37,7 @@ func (p *Product) Readings() []cell.Reading {
 			row := &part[i]
 			for _, e := range row.list {
 				r := cell.Reading{At: cell.Ref{Sheet: row.sheet, Row: row.row, Col: int(e.col)}, Column: e.column.Heading, Used: e.used}
+				r.From = p.origins.ofValue(r.At)
 				if e.blank {
 					r.Why = e.text
 				} else {
@@ -86,12 +88,18 @@ type Plan struct {
 	Problems      cell.Errors               // in workbook order
 	Columns       map[string]map[string]int // sheet -> heading without unit -> column number, for Locate
 	Sheets        []string                  // the sheets in the order of the workbook, by the names that the user gave
+	Sources       []Source                  // the user's own spreadsheets that the import made the plan of; none if it was typed
+	NotImported   int                       // how many of their rows the import could not take
+	origins       *origins                  // where each value comes from; nil if the plan was typed
 }
 
-// Locate fills in the column of a problem whose finder knew the row and the heading only.
+// Locate fills in the column of a problem whose finder knew the row and the heading only, and where the cell comes from.
 func (p *Plan) Locate(e cell.Error) cell.Error {
 	if e.At.Row > 0 && e.At.Col == 0 && e.Field != "" {
 		e.At.Col = p.Columns[e.At.Sheet][e.Field]
+	}
+	if e.From == "" {
+		e.From = p.origins.of(e.At)
 	}
 	return e
 }

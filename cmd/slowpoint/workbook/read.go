@@ -72,6 +72,7 @@ func readFile(name string, size int64, what string) (data []byte, digest string,
 type reader struct {
 	plan     *Plan
 	list     []*Sheet          // the sheets there may be
+	made     map[string]*Grid  // sheets that the import made, by the name in MadeSheets; nil where there is no import
 	tables   map[string]*table // by the name in Sheets
 	grids    map[string]*Grid
 	unread   map[string]cell.Errors // why a sheet, or a part of it, could not be read
@@ -137,12 +138,15 @@ func (r *reader) sheets(grids []*Grid) {
 		r.plan.Sheets = append(r.plan.Sheets, g.Name)
 	}
 	known := names(r.list, func(s *Sheet) string { return s.Name })
+	imported := r.byImport(grids)
 	for _, g := range grids {
 		s := sheetOf(r.list, g.Name)
 		at := cell.Ref{Sheet: g.Name}
 		switch {
 		case g.Hidden:
 			r.add(hiddenSheet.problem(at, cell.Warning, "", g.Name))
+		case s == nil && imported[g] != nil:
+			r.keepMade(g, imported[g])
 		case s == nil:
 			hint := "the sheets of a plan are " + and(known)
 			if n := nearest(g.Name, known); n != "" {
@@ -233,12 +237,15 @@ func (r *reader) finish() {
 	if len(r.products) == 0 && len(r.unread["Products"]) == 0 {
 		r.add(noProducts.problem(cell.Ref{Sheet: r.grids["Products"].Name}, cell.Fault, "", ""))
 	}
+	r.readOrigins()
 	for _, p := range r.products {
 		if len(p.because) == 0 {
+			p.origins = r.plan.origins
 			r.plan.Products = append(r.plan.Products, p.Product)
 			continue
 		}
 		nc := NotCalculated{At: p.At, Product: p.Name, Because: once(p.because)}
+		r.plan.origins.tell(nc.Because)
 		nc.Because.Sort(r.plan.Sheets)
 		if nc.Product == "" {
 			nc.Product = fmt.Sprintf("(row %d)", p.At.Row)
@@ -246,6 +253,7 @@ func (r *reader) finish() {
 		r.plan.NotCalculated = append(r.plan.NotCalculated, nc)
 	}
 	r.plan.Problems = once(r.problems)
+	r.plan.origins.tell(r.plan.Problems)
 	r.plan.Problems.Sort(r.plan.Sheets)
 }
 

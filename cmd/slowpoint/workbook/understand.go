@@ -14,6 +14,7 @@ import (
 // understand fills a plan, of which name and digest are known, from its sheets. A workbook, a folder and the demo all come this way.
 func understand(grids []*Grid, p *Plan) (*Plan, error) {
 	r := newReader(p, Sheets)
+	r.made = map[string]*Grid{}
 	r.sheets(grids)
 	if err := r.isPlan(); err != nil {
 		return nil, err
