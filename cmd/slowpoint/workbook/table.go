@@ -464,19 +464,18 @@ func (l *Line) note(heading, typed, used, why string) {
 
 // broken tells of a cell that holds no value at all.
 func (l *Line) broken(heading string, e *Entry) bool {
-	switch e.Kind {
-	case Broken:
-		l.Fault(heading, e.Text, errorValue)
-	case NoStored:
-		l.Fault(heading, "", noResult, l.At(heading).String())
-	default:
-		if e.Formula {
-			l.r.formula(l.At(heading))
-		}
-		return false
+	if no := e.broken(l.At(heading)); no != nil {
+		l.refuse(heading, no)
+		return true
 	}
-	return true
+	if e.Formula {
+		l.r.formula(l.At(heading))
+	}
+	return false
 }
+
+// refuse tells of a cell that its column does not take.
+func (l *Line) refuse(heading string, no *refusal) { l.Fault(heading, no.typed, no.s, no.args...) }
 
 // Words reads a cell as Words; "" for a blank. A needed blank is a fault.
 func (l *Line) Words(heading string) string {
@@ -488,13 +487,10 @@ func (l *Line) Words(heading string) string {
 	if l.broken(heading, e) {
 		return ""
 	}
-	s := e.Text
-	if most := c.longest(); tooLong(s, most) {
-		l.Fault(heading, string([]rune(s)[:40])+"…", textTooLong, strconv.Itoa(most))
+	s, no := c.words(e, l.t.grid)
+	if no != nil {
+		l.refuse(heading, no)
 		return ""
-	}
-	if e.Kind == Figure && e.Form == Date {
-		s = isoDate(e.Text, l.t.grid.Is1904)
 	}
 	l.note(heading, s, s, "")
 	return s
@@ -543,14 +539,13 @@ func (l *Line) Choice(heading string) string {
 	if l.broken(heading, e) {
 		return ""
 	}
-	for _, w := range c.Choices {
-		if Key(w) == Key(e.Text) {
-			l.note(heading, e.Text, w, "")
-			return w
-		}
+	w, no := c.choice(e)
+	if no != nil {
+		l.refuse(heading, no)
+		return ""
 	}
-	l.Fault(heading, e.Text, notAChoice, heading, meant(e.Text, c.Choices), strings.Join(c.Choices, ", "))
-	return ""
+	l.note(heading, e.Text, w, "")
+	return w
 }
 
 // Number reads a cell as a value of its column's quantity, in the unit that the program computes in; nil for a blank or a fault.
@@ -573,38 +568,29 @@ func (l *Line) Value(heading string) *unit.Value {
 	if l.broken(heading, e) || h.unit == nil { // a heading at fault has been told, and the row suffers from it
 		return nil
 	}
-	v, ok := l.convert(heading, e, c, h.unit)
-	if !ok {
+	v, no := c.value(e, l.t.grid, h.unit, l.r.decimal)
+	if no != nil {
+		l.refuse(heading, no)
 		return nil
 	}
-	if s, args := c.refuses(v.Computed); s != nil {
-		l.Fault(heading, v.Typed, *s, args...)
-		return nil
+	if e.Kind == Text && !l.r.shownBy.IsZero() && unit.Ambiguous(e.Text) {
+		sign := map[unit.Decimal]string{unit.Point: "point", unit.Comma: "comma"}[l.r.decimal]
+		l.Remark(cell.Note, heading, e.Text, readByEvidence, short(v.Computed)+spaced(c.Quantity.Units[0].Name()), sign, l.r.shownBy.String())
 	}
-	if !l.likely(c, v) {
-		return nil
-	}
+	l.likely(c, v)
 	l.note(heading, v.Typed, short(v.Computed)+spaced(c.Quantity.Units[0].Name()), "")
 	return &v
 }
 
-// likely holds a number against what is usual and what is possible; false if it cannot be.
-func (l *Line) likely(c *Column, v unit.Value) bool {
-	usual, slip := c.Usual, ""
+// likely holds a number against what is usual.
+func (l *Line) likely(c *Column, v unit.Value) {
+	usual := c.Usual
 	if c.OfMedium != nil && Key(l.Entry("Where").Text) == "medium" {
 		usual = c.OfMedium
 	}
-	if strings.HasSuffix(v.Typed, spaced(c.Unit)) {
-		slip = ": " + c.Slip
+	if usual.outside(v.Computed) {
+		l.Remark(cell.Warning, c.Heading, v.Typed, unusual, c.shown(v.Computed), c.between(usual), c.slipped(v))
 	}
-	switch {
-	case c.Possible.outside(v.Computed):
-		l.Fault(c.Heading, v.Typed, impossible, c.shown(v.Computed), c.between(c.Possible), c.between(c.Usual), slip)
-		return false
-	case usual.outside(v.Computed):
-		l.Remark(cell.Warning, c.Heading, v.Typed, unusual, c.shown(v.Computed), c.between(usual), slip)
-	}
-	return true
 }
 
 // shown words a computed number in the unit of the blank workbook.
@@ -626,66 +612,6 @@ func (c *Column) between(s *span) string {
 func (c *Column) whole(x float64) string {
 	u := c.Quantity.Unit(c.Unit)
 	return strconv.FormatFloat(math.Round(u.Out(x)*1e6)/1e6, 'f', -1, 64) + spaced(u.Name())
-}
-
-// convert makes a value of a cell, by its kind and its number format.
-func (l *Line) convert(heading string, e *Entry, c *Column, u *unit.Unit) (unit.Value, bool) {
-	q := c.Quantity
-	if e.Kind == Text {
-		v, m := q.Parse(e.Text, u, l.r.decimal)
-		if m != nil {
-			l.Fault(heading, e.Text, asFound, m.Says, m.Mend)
-			return v, false
-		}
-		if !l.r.shownBy.IsZero() && unit.Ambiguous(e.Text) {
-			sign := map[unit.Decimal]string{unit.Point: "point", unit.Comma: "comma"}[l.r.decimal]
-			l.Remark(cell.Note, heading, e.Text, readByEvidence, short(v.Computed)+spaced(q.Units[0].Name()), sign, l.r.shownBy.String())
-		}
-		return v, true
-	}
-	x, err := strconv.ParseFloat(e.Text, 64)
-	expected := article(q.Name)
-	switch {
-	case e.Kind == Truth:
-		l.Fault(heading, e.Text, isTruth, expected)
-	case err != nil || math.IsNaN(x) || math.IsInf(x, 0):
-		l.Fault(heading, e.Text, notNumber, expected)
-	case e.Form == Date:
-		l.Fault(heading, isoDate(e.Text, l.t.grid.Is1904), isDate, expected)
-	case e.Form == Clock && q != &unit.Duration:
-		l.Fault(heading, clockWords(x), isTime, expected)
-	case e.Form == Clock:
-		s := math.Round(x*86400*1000) / 1000
-		return unit.Value{Computed: s, Typed: clockWords(x)}, true
-	case e.Form == Percent && q == &unit.Percent:
-		return u.Of(math.Round(x*100*1e12)/1e12, short(x*100)), true
-	case e.Form == Percent && !q.Plain():
-		l.Fault(heading, short(x*100)+" %", isPercent, expected)
-	case strings.Contains(u.Name(), ":"):
-		l.Fault(heading, e.Text, notClock, u.Name())
-	case e.Form >= Worded && q.Unit(l.t.grid.words[e.Form-Worded]) != nil && q.Unit(l.t.grid.words[e.Form-Worded]) != u:
-		l.Fault(heading, shown(e.Text, x), isWorded, l.t.grid.words[e.Form-Worded], u.Name())
-	default:
-		return u.Of(x, shown(e.Text, x)), true
-	}
-	return unit.Value{}, false
-}
-
-// refuses tells which numbers a column does not take.
-func (c *Column) refuses(x float64) (*saying, []string) {
-	switch {
-	case c.Least == Positive && x <= 0:
-		return &notPositive, []string{c.Heading}
-	case c.Least == NotNegative && x < 0:
-		return &negative, []string{c.Heading}
-	case c.Least == Share && (x < 0 || x > 100):
-		return &notShare, nil
-	case c.Least == UpToOne && (x <= 0 || x > 1):
-		return &notUpToOne, []string{c.Heading}
-	case c.Quantity == &unit.Temperature && x < -273.15:
-		return &belowZeroK, nil
-	}
-	return nil, nil
 }
 
 // short prints a number with at most seven significant digits.
