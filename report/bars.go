@@ -31,7 +31,7 @@ func (d *doc) marginBars(fs []*rules.Finding) {
 		lines := wrap(d.clean(name), barNames-2, small, false)
 		h := max(float64(len(lines))*height(small)+1.5, 6.5)
 		d.need(h + 8*btof(headed < 0))
-		if headed != d.pdf.page {
+		if headed != d.pdf.page() {
 			d.y += height(small)
 			d.put(d.left, d.y-1, say("bars limit"), small, true)
 			d.put(d.left+barNames, d.y-1, say("bars temperature", d.head.degree()), small, true)
@@ -39,7 +39,7 @@ func (d *doc) marginBars(fs []*rules.Finding) {
 			d.put(d.left+barNames+2*barPanel, d.y-1, say("bars verdict"), small, true)
 			d.rule(d.left, d.left+frameWide, d.y+0.5, 1)
 			d.y += 1
-			headed = d.pdf.page
+			headed = d.pdf.page()
 		}
 		for i, s := range lines {
 			d.put(d.left, d.y+0.5+(float64(i+1)-0.2)*height(small), s, small, false)
@@ -100,9 +100,7 @@ func (d *doc) bar(x, y, h float64, v *float64, s scale, verdict rules.Verdict, w
 	top := y + (h-tall)/2
 	switch verdict {
 	case rules.Met:
-		p.ground(blue)
-		p.box(a, top, max(b-a, 0.3), tall)
-		p.fill()
+		p.box(blue, a, top, max(b-a, 0.3), tall)
 	case rules.NotMet:
 		edge := pencil{pt: 0.8, color: vermillion}
 		p.frame(edge, a, top, max(b-a, 0.3), tall)

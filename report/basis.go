@@ -231,7 +231,7 @@ func (x *sheet) readings() {
 			cells = append(cells, rs[i])
 		}
 		if i+1 == len(rs) || rs[i].At.Sheet != rs[i+1].At.Sheet || rs[i].At.Row != rs[i+1].At.Row {
-			rows = append(rows, []string{row.String(), echoed(cells)})
+			rows = append(rows, []string{strings.TrimSpace(row.String() + "\n" + sharedSource(cells)), echoed(cells)})
 			cells = cells[:0]
 		}
 	}
@@ -253,8 +253,9 @@ func (x *sheet) carded() map[cell.Ref]bool {
 }
 
 // echoed are the cells of a row of the input: letter and column, what was typed, and what was used where that differs. Blank cells
-// side by side with one default are told together.
+// side by side with one default are told together. Where a cell comes from stands behind its name, without what stands beside the row.
 func echoed(rs []cell.Reading) string {
+	source := sharedSource(rs)
 	var out []string
 	blanks, before := "", ""
 	for i := range rs {
@@ -262,6 +263,9 @@ func echoed(rs []cell.Reading) string {
 		name := r.Column
 		if r.At.Col > 0 {
 			name = cell.ColumnName(r.At.Col) + " " + name
+		}
+		if r.From != "" {
+			name += " (" + strings.TrimPrefix(r.From, source+"!") + ")"
 		}
 		why := r.Why
 		if strings.HasPrefix(why, "blank:") { // says the same as "(blank)" and the arrow
@@ -285,6 +289,34 @@ func echoed(rs []cell.Reading) string {
 		}
 	}
 	return strings.Join(out, " · ")
+}
+
+// sharedSource is the sheet of the user's own that most cells of a row come from, the first of equals; "" if they come from none.
+func sharedSource(rs []cell.Reading) string {
+	best, times := "", map[string]int{}
+	for i := range rs {
+		if n := strings.LastIndexByte(rs[i].From, '!'); n > 0 {
+			s := rs[i].From[:n]
+			if times[s]++; times[s] > times[best] {
+				best = s
+			}
+		}
+	}
+	return best
+}
+
+// sources are the spreadsheets that the plan was made of, for a table of names and values; at most so many by name.
+func (h *Head) sources(most int) [][2]string {
+	var rows [][2]string
+	name := say("key source")
+	for _, s := range h.Sources[:min(len(h.Sources), most)] {
+		rows = append(rows, [2]string{name, say("source", s.File, s.SHA256)})
+		name = " "
+	}
+	if n := len(h.Sources) - most; n > 0 {
+		rows = append(rows, [2]string{name, say("source more", n)})
+	}
+	return rows
 }
 
 // changeKeys are the reasons to look again, under "change " in words.

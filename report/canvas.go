@@ -117,12 +117,10 @@ func (c *canvas) arc(e vg.PathComp, begun bool) (x, y float64) {
 	r := float64(e.Radius) * mmPerPt * scale
 	cx, cy := c.at(e.Pos)
 	s, k := math.Sincos(e.Start + turn)
-	if begun {
-		c.pdf.lineTo(cx+r*k, cy-r*s)
-	} else {
+	if !begun {
 		c.pdf.moveTo(cx+r*k, cy-r*s)
 	}
-	c.pdf.arc(cx, cy, r, e.Start+turn, e.Angle)
+	c.pdf.arcTo(cx, cy, r, e.Start+turn, e.Angle)
 	s, k = math.Sincos(e.Start + turn + e.Angle)
 	return cx + r*k, cy - r*s
 }

@@ -40,12 +40,18 @@ func NewJSON(w io.Writer, h *Head) *JSON {
 // The parts of results.json. A number that does not exist is null.
 type (
 	planJSON struct {
-		Name   string          `json:"name"`
-		SHA256 string          `json:"sha256"`
-		Items  json.RawMessage `json:"items"`
+		Name    string          `json:"name"`
+		SHA256  string          `json:"sha256"`
+		Items   json.RawMessage `json:"items"`
+		Sources []sourceJSON    `json:"sources,omitempty"`
+	}
+	sourceJSON struct {
+		File   string `json:"file"`
+		SHA256 string `json:"sha256"`
 	}
 	problemJSON struct {
 		At      string `json:"at"`
+		From    string `json:"from,omitempty"`
 		Level   string `json:"level"`
 		Typed   string `json:"typed"`
 		Message string `json:"message"`
@@ -125,6 +131,7 @@ type (
 	}
 	readingJSON struct {
 		At     string `json:"at"`
+		From   string `json:"from,omitempty"`
 		Column string `json:"column"`
 		Typed  string `json:"typed"`
 		Used   string `json:"used"`
@@ -216,7 +223,7 @@ func (j *JSON) Close() error {
 	j.text("schema", Schema)
 	j.text("version", j.h.Version)
 	j.text("date", isoDate(j.h))
-	j.value("plan", planJSON{Name: j.h.Plan, SHA256: j.h.SHA256, Items: j.itemsOf(j.h.Items)})
+	j.value("plan", planJSON{Name: j.h.Plan, SHA256: j.h.SHA256, Items: j.itemsOf(j.h.Items), Sources: sourcesOf(j.h.Sources)})
 	j.value("every_s", exactNumber(&j.h.EveryS))
 	list(j, "problems", problemsOf(j.h.Problems), false)
 	list(j, "not_calculated", notCalculatedOf(j.h.NotCalculated), false)
@@ -410,10 +417,18 @@ func (j *JSON) itemsOf(items []Item) json.RawMessage {
 	return append(b, '}')
 }
 
+func sourcesOf(ss []Source) []sourceJSON {
+	var out []sourceJSON // nil for none: then the key is left out
+	for _, s := range ss {
+		out = append(out, sourceJSON(s))
+	}
+	return out
+}
+
 func problemsOf(es cell.Errors) []problemJSON {
 	out := make([]problemJSON, 0, len(es))
 	for _, e := range es {
-		out = append(out, problemJSON{e.At.String(), e.Level.String(), e.Typed, e.Msg, e.Hint})
+		out = append(out, problemJSON{e.At.String(), e.From, e.Level.String(), e.Typed, e.Msg, e.Hint})
 	}
 	return out
 }
@@ -527,7 +542,7 @@ func cautionsOf(cs []Caution) []cautionJSON {
 func readingsOf(rs []cell.Reading) []readingJSON {
 	out := make([]readingJSON, 0, len(rs))
 	for _, r := range rs {
-		out = append(out, readingJSON{r.At.String(), r.Column, r.Typed, r.Used, r.Why})
+		out = append(out, readingJSON{r.At.String(), r.From, r.Column, r.Typed, r.Used, r.Why})
 	}
 	return out
 }

@@ -42,12 +42,12 @@ type doc struct {
 
 // newDoc opens a document without a page.
 func newDoc(h *Head, title string) *doc {
-	p := newPaper(h.Paper)
-	p.date, p.creator, p.title = h.Date, flat("slowpoint "+h.Version), flat(title)
-	if p.date.IsZero() {
-		p.date = time.Unix(0, 0)
+	date := h.Date
+	if date.IsZero() {
+		date = time.Unix(0, 0)
 	}
-	return &doc{pdf: p, head: h, left: (p.wide - frameWide) / 2, title: title, note: say("footer not measured"), unseen: unseen{}, marked: -1}
+	p := newPaper(h.Paper, date, flat(title), flat("slowpoint "+h.Version))
+	return &doc{pdf: p, head: h, left: (p.wide() - frameWide) / 2, title: title, note: say("footer not measured"), unseen: unseen{}, marked: -1}
 }
 
 // clean makes text printable and remembers what could not be shown.
@@ -164,10 +164,10 @@ func (d *doc) grouped(cols []col, rows [][]string, size float64, ends func(row i
 	headed := -1
 	start := func(h float64) { // room for h mm, below a header
 		d.need(h + btof(headed < 0)*2*height(size))
-		if headed != d.pdf.page {
+		if headed != d.pdf.page() {
 			d.row(cols, titles, size, true)
 			d.rule(d.left, d.left+total(cols), d.y, 1)
-			headed = d.pdf.page
+			headed = d.pdf.page()
 		}
 	}
 	most := int((bottomY - topY - 20) / height(size))
@@ -303,9 +303,9 @@ func caught(err *error) {
 
 // finish writes the running titles and page numbers and sends the document.
 func (d *doc) finish(w io.Writer) error {
-	n := len(d.pdf.sheets)
+	n := d.pdf.pages()
 	for i := 1; i <= n; i++ {
-		d.pdf.page = i
+		d.pdf.turnTo(i)
 		d.running(i, n)
 	}
 	return d.pdf.write(w)

@@ -225,6 +225,7 @@ func TestLengthsInInches(t *testing.T) {
 func TestFontAfterUprightWords(t *testing.T) {
 	var fonts []string
 	d := newDoc(roastHead(), "T")
+	d.pdf.pdf.SetCompression(false)
 	d.page()
 	d.put(20, 20, "A heading", 12.5, true)
 	s := section{d: d, p: &model.Product{}}
@@ -232,9 +233,9 @@ func TestFontAfterUprightWords(t *testing.T) {
 	s.measure(20, 70, 60, 70, "level")
 	var saved []string
 	now := ""
-	for _, m := range regexp.MustCompile(`(?m)^q |^Q$|/F\S+ [\d.]+ Tf|Tj ET`).FindAllString(string(d.pdf.leaf().b), -1) {
+	for _, m := range regexp.MustCompile(`(?m)^q$|^Q$|/F\S+ [\d.]+ Tf|Tj ET`).FindAllString(content(t, d.pdf), -1) {
 		switch {
-		case m == "q ":
+		case m == "q":
 			saved = append(saved, now)
 		case m == "Q":
 			now, saved = saved[len(saved)-1], saved[:len(saved)-1]

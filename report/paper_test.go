@@ -2,16 +2,21 @@ package report
 
 import (
 	"bytes"
-	"compress/zlib"
 	"fmt"
 	"image/color"
-	"io"
 	"os/exec"
 	"regexp"
-	"strconv"
 	"strings"
 	"testing"
+	"time"
 )
+
+// blank is a document for a test, not compressed.
+func blank(size string) *paper {
+	p := newPaper(size, time.Unix(0, 0), "T", "C")
+	p.pdf.SetCompression(false)
+	return p
+}
 
 // written gives the file of a document.
 func written(t *testing.T, p *paper) []byte {
@@ -23,77 +28,25 @@ func written(t *testing.T, p *paper) []byte {
 	return b.Bytes()
 }
 
-// Every entry of the cross-reference table stands where its object begins, and the trailer where the table does.
-func TestCrossReferences(t *testing.T) {
-	p := newPaper("A4")
-	for i := range 3 {
-		p.addPage()
-		p.text(20, 30, "page (\\) é Щ", 10, i == 1, black)
-		p.mark(fmt.Sprint("part ", i), min(i, 1), 20)
+// content gives what is drawn on the only page, with the fonts called F1, F2, … as they come.
+func content(t *testing.T, p *paper) string {
+	t.Helper()
+	m := regexp.MustCompile(`(?s)stream\n(.*?)\nendstream`).FindSubmatch(written(t, p))
+	if m == nil {
+		t.Fatal("there is no page")
 	}
-	b := written(t, p)
-	begin, err := strconv.Atoi(string(regexp.MustCompile(`startxref\n(\d+)\n%%EOF\n$`).FindSubmatch(b)[1]))
-	if err != nil || !bytes.HasPrefix(b[begin:], []byte("xref\n")) {
-		t.Fatalf("the trailer points at %d: %v", begin, err)
-	}
-	entries := regexp.MustCompile(`(?m)^(\d{10}) 00000 n $`).FindAllSubmatch(b[begin:], -1)
-	if want := 2 + 2*fontObjects + 2*3 + 4 + 2; len(entries) != want { // pages, resources; fonts; 3 pages; outline; description, catalogue
-		t.Errorf("%d objects, want %d", len(entries), want)
-	}
-	for i, e := range entries {
-		at, _ := strconv.Atoi(string(e[1]))
-		if want := fmt.Sprintf("%d 0 obj\n", i+1); !bytes.HasPrefix(b[at:], []byte(want)) {
-			t.Errorf("object %d: at %d stands %q", i+1, at, b[at:at+10])
+	names := map[string]string{}
+	return regexp.MustCompile(`/F[0-9a-f]{40}`).ReplaceAllStringFunc(string(m[1]), func(s string) string {
+		if names[s] == "" {
+			names[s] = fmt.Sprint("/F", len(names)+1)
 		}
-	}
-	for _, m := range regexp.MustCompile(`/Length (\d+) /Filter /FlateDecode[^>]*>>\nstream\n`).FindAllSubmatchIndex(b, -1) {
-		n, _ := strconv.Atoi(string(b[m[2]:m[3]]))
-		if !bytes.HasPrefix(b[m[1]+n:], []byte("\nendstream")) {
-			t.Errorf("the stream at %d does not end after %d bytes", m[1], n)
-		}
-		z, err := zlib.NewReader(bytes.NewReader(b[m[1] : m[1]+n]))
-		if err != nil {
-			t.Fatal(err)
-		}
-		if _, err := io.ReadAll(z); err != nil {
-			t.Errorf("the stream at %d: %v", m[1], err)
-		}
-	}
-}
-
-// The outline is a tree of links: parents, neighbours, first and last.
-func TestOutline(t *testing.T) {
-	p := newPaper("A4")
-	p.addPage()
-	for _, m := range []struct {
-		words string
-		level int
-	}{{"a", 0}, {"a1", 1}, {"a2", 1}, {"b", 0}, {"b1", 1}} {
-		p.mark(m.words, m.level, 50)
-	}
-	b := string(written(t, p))
-	n := pagesAt + 2 // object of a
-	for i, want := range []string{
-		fmt.Sprintf("/Parent %d 0 R /Next %d 0 R /First %d 0 R /Last %d 0 R", n+5, n+3, n+1, n+2),
-		fmt.Sprintf("/Parent %d 0 R /Next %d 0 R", n, n+2),
-		fmt.Sprintf("/Parent %d 0 R /Prev %d 0 R", n, n+1),
-		fmt.Sprintf("/Parent %d 0 R /Prev %d 0 R /First %d 0 R /Last %d 0 R", n+5, n, n+4, n+4),
-		fmt.Sprintf("/Parent %d 0 R", n+3),
-		fmt.Sprintf("<</Type /Outlines /First %d 0 R /Last %d 0 R", n, n+3),
-	} {
-		line := regexp.MustCompile(fmt.Sprintf(`(?m)^%d 0 obj\n(.*)>>$`, n+i)).FindStringSubmatch(b)
-		if line == nil || !strings.HasSuffix(line[1], want) {
-			t.Errorf("object %d: %q, want it to end in %q", n+i, line, want)
-		}
-	}
-	if !strings.Contains(b, fmt.Sprintf("/Dest [%d 0 R /XYZ 0 700.16 null]", pagesAt)) { // (297 − 50) mm · 72/25.4
-		t.Error("the outline does not lead to 50 mm below the top of the first page")
-	}
+		return names[s]
+	})
 }
 
 // Nothing is set twice, and what a turn changes is undone after it.
 func TestPaperState(t *testing.T) {
-	p := newPaper("Letter")
+	p := blank("Letter")
 	p.addPage()
 	red := color.NRGBA{255, 0, 0, 255}
 	p.line(pencil{pt: 1, color: black}, 0, 0, 25.4, 25.4)
@@ -102,61 +55,110 @@ func TestPaperState(t *testing.T) {
 	p.text(25.4, 25.4, "a", 9, false, black)
 	p.turned(90, 25.4, 50.8, func() { p.text(25.4, 50.8, "b", 11, true, red) })
 	p.text(25.4, 25.4, "c", 9, false, black)
-	p.ground(red)
-	p.box(25.4, 25.4, 12.7, 6.35)
-	p.fill()
-	want := "1 j\n0 792 m\n72 720 l\nS\n" +
-		"1 0 0 RG\n2.25 w\n[3 1] 0 d\n0 720 m\n72 792 l\nS\n0 720 m\n72 792 l\nS\n" +
-		"BT /F1 9 Tf 72 720 Td (\x00a) Tj ET\n" +
-		"q 0 1 -1 0 720 576 cm\n1 0 0 rg\nBT /F2 11 Tf 72 648 Td (\x00b) Tj ET\nQ\n" +
-		"BT 72 720 Td (\x00c) Tj ET\n" +
-		"1 0 0 rg\n72 720 36 -18 re\nf\n"
-	if got := string(p.leaf().b); got != want {
-		t.Errorf("%q,\nwant\n%q", got, want)
+	p.text(25.4, 25.4, "d", 9, false, black)
+	p.box(red, 25.4, 25.4, 12.7, 6.35)
+	want := "BT /F1 9.00 Tf ET\n0.000 g\nBT 72.00 720.00 Td (\x00a) Tj ET\n" +
+		"q\n0.00000 1.00000 -1.00000 0.00000 720.00000 576.00000 cm\nBT /F2 11.00 Tf ET\n1.000 0.000 0.000 rg\nBT 72.00 648.00 Td (\x00b) Tj ET\nQ\n" +
+		"BT /F1 9.00 Tf ET\nBT 72.00 720.00 Td (\x00c) Tj ET\nBT 72.00 720.00 Td (\x00d) Tj ET\n" +
+		"1.000 0.000 0.000 rg\n72.00 720.00 36.00 -18.00 re f\n"
+	lines := "0.000 G\n1.00 w\n[] 0.00 d\n0.00 792.00 m 72.00 720.00 l S\n" +
+		"1.000 0.000 0.000 RG\n2.25 w\n[3.00 1.00] 0.00 d\n0.00 720.00 m 72.00 792.00 l S\n0.00 720.00 m 72.00 792.00 l S\n"
+	if got := content(t, p); !strings.HasSuffix(got, lines+want) {
+		t.Errorf("%q,\nwant at its end\n%q", got, lines+want)
 	}
 }
 
-func TestAppendPt(t *testing.T) {
-	for _, c := range []struct {
-		v    float64
-		want string
-	}{{0, "0"}, {-0.001, "0"}, {12, "12"}, {0.5, "0.5"}, {-3.049, "-3.05"}, {7.004, "7"}, {841.89, "841.89"}, {-0.07, "-0.07"}} {
-		if got := string(appendPt(nil, c.v)); got != c.want {
-			t.Errorf("%g: %s, want %s", c.v, got, c.want)
+// Going back to a page and beginning one sets everything anew: the page does not know what another had.
+func TestPaperAcrossPages(t *testing.T) {
+	p := blank("A4")
+	draw := func() {
+		p.line(pencil{pt: 1.5, color: blue}, 20, 20, 30, 20)
+		p.text(20, 30, "a", 9, true, blue)
+	}
+	p.addPage()
+	draw()
+	p.addPage()
+	p.line(pencil{pt: 0.5, color: black, dash: []float64{2, 1}}, 20, 20, 30, 20)
+	p.text(20, 30, "b", 11, false, black)
+	p.turnTo(1)
+	draw()
+	p.addPage()
+	draw()
+	got := string(written(t, p))
+	for _, part := range []string{"0.000 0.447 0.698 RG\n1.50 w\n[] 0.00 d\n", "9.00 Tf ET\n0.000 0.447 0.698 rg\n"} {
+		if n := strings.Count(got, part); n != 3 {
+			t.Errorf("%q stands %d times, want 3", part, n)
+		}
+	}
+	if p.page() != 3 || p.pages() != 3 {
+		t.Errorf("page %d of %d, want 3 of 3", p.page(), p.pages())
+	}
+}
+
+// An arc goes on from where the path stands or by a line to its beginning, counter-clockwise.
+func TestArc(t *testing.T) {
+	p := blank("Letter")
+	p.addPage()
+	p.moveTo(25.4, 50.8)
+	p.arcTo(50.8, 50.8, 12.7, 0, 3.14159265358979)
+	p.stroke()
+	got := content(t, p)
+	for _, want := range []string{"72.00 648.00 m\n180.00 648.00 l\n", " 144.00000 684.00000 c\n", " 108.00000 648.00000 c\nS\n"} {
+		if !strings.Contains(got, want) {
+			t.Errorf("%q is missing in %q", want, got)
 		}
 	}
 }
 
-// The font holds what is written: text in other blocks than the usual ones comes back from the PDF, in both weights, and pdffonts
-// finds the font embedded as a part with a name of its own.
+// The fonts hold what is written: text in other blocks than the usual ones comes back from the PDF, in both weights, and pdffonts
+// finds each font embedded.
 func TestLettering(t *testing.T) {
-	p := newPaper("A4")
+	p := newPaper("A4", time.Unix(0, 0), "T", "C")
 	p.addPage()
-	p.text(20, 30, "Żurek, Щи, Σούπα, Phở – 74 °C", 10, false, black)
-	p.text(20, 40, "Ünter Яблоко ☐", 10, true, black)
-	got := pdfText(t, written(t, p))
-	for _, w := range []string{"Żurek, Щи, Σούπα, Phở – 74 °C", "Ünter Яблоко ☐"} {
+	words := []string{"Crème at 74 °C – done", "Żurek, Щи, Σούπα, Phở", "Żurek again", "Ünter Яблоко ☐"}
+	for i, w := range words {
+		p.text(20, 30+10*float64(i), w, 10, i == 3, black)
+	}
+	pdf := written(t, p)
+	got := pdfText(t, pdf)
+	for _, w := range words {
 		if !strings.Contains(got, w) {
 			t.Errorf("%q is missing in %q", w, got)
 		}
 	}
-	var none, latin blocks
-	latin.add("é")
-	a, b := letteringOf(false, &none), letteringOf(false, &latin)
-	if a.name == b.name || len(b.file) <= len(a.file) {
-		t.Errorf("the font with accents is %s of %d bytes, without %s of %d", b.name, len(b.file), a.name, len(a.file))
-	}
-	if letteringOf(false, &none) != a {
-		t.Error("the same font is cut out twice")
+	for k, want := range []int{2, 1} { // the one for Western Europe, and the one that holds the other blocks too, at once or later
+		if p.fonts[k].n != want {
+			t.Errorf("weight %d: %d fonts, want %d", k, p.fonts[k].n, want)
+		}
 	}
 	tool, err := exec.LookPath("pdffonts")
 	if err != nil {
 		t.Skip("pdffonts is missing")
 	}
 	cmd := exec.Command(tool, "-")
-	cmd.Stdin = bytes.NewReader(written(t, p))
+	cmd.Stdin = bytes.NewReader(pdf)
 	out, err := cmd.CombinedOutput()
-	if err != nil || len(regexp.MustCompile(`[A-Z]{6}\+DejaVuSans(-Bold)? +CID TrueType +Identity-H +yes yes yes`).FindAll(out, -1)) != 2 {
-		t.Errorf("%v\n%s", err, out)
+	if n := len(regexp.MustCompile(`utf8dejavu\S* +CID TrueType +Identity-H +yes no +yes`).FindAll(out, -1)); err != nil || n != 3 {
+		t.Errorf("%d fonts: %v\n%s", n, err, out)
+	}
+}
+
+// A cut-out is made once for each set of blocks, and nobody gets another's bytes, for the library writes into them.
+func TestCutOut(t *testing.T) {
+	var none, latin blocks
+	if none.add("é – 74 °C ☐") {
+		t.Error("Western European text needs more than what is always there")
+	}
+	if !latin.add("ż") || latin.add("Ż") {
+		t.Error("the block of ż is not added exactly once")
+	}
+	a, b := cutOut(false, none), cutOut(false, latin)
+	if len(b) <= len(a) {
+		t.Errorf("the font with ż has %d bytes, without %d", len(b), len(a))
+	}
+	kept := cutOuts.of[0][none]
+	again := cutOut(false, none)
+	if !bytes.Equal(a, again) || &a[0] == &again[0] || &kept[0] != &cutOuts.of[0][none][0] {
+		t.Error("the font is cut out twice, or shared by two documents")
 	}
 }

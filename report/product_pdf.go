@@ -487,8 +487,8 @@ func (x *sheet) front() {
 	for _, it := range h.Items {
 		rows = append(rows, [2]string{it.Item, it.Value})
 	}
-	rows = append(rows, [2]string{say("key file"), h.Plan}, [2]string{say("key digest"), h.SHA256}, [2]string{say("key version"), h.Version},
-		[2]string{say("key date"), h.day()})
+	rows = append(rows, [2]string{say("key file"), h.Plan}, [2]string{say("key digest"), h.SHA256})
+	rows = append(append(rows, h.sources(10)...), [2]string{say("key version"), h.Version}, [2]string{say("key date"), h.day()})
 	d.heading(say("plan title"), 1, 20)
 	d.pairs(rows, 45)
 	x.signatures("sign prepared", "sign reviewed", "sign responsible")
@@ -504,7 +504,7 @@ func (x *sheet) problems(ps cell.Errors) {
 		if e.Typed != "" {
 			msg = say("problem typed", e.Typed, msg)
 		}
-		rows = append(rows, []string{e.At.String(), e.Level.String(), msg})
+		rows = append(rows, []string{e.Where(), e.Level.String(), msg})
 	}
 	x.table([]col{{title: say("col place"), wide: 34}, {title: say("col level"), wide: 20}, {title: say("col message"), wide: frameWide - 54}}, rows, small)
 }

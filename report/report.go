@@ -16,10 +16,12 @@ type Head struct {
 	Date          time.Time
 	Plan          string // file or folder name
 	SHA256        string
-	Items         []Item  // the sheet Plan
-	Paper         string  // A4 or Letter
-	Fahrenheit    bool    // °F first
-	EveryS        float64 // interval of the courses, s
+	Items         []Item   // the sheet Plan
+	Sources       []Source // spreadsheets that the import made the plan of; none for a plan that was typed
+	NotImported   int      // rows of theirs that the import could not take
+	Paper         string   // A4 or Letter
+	Fahrenheit    bool     // °F first
+	EveryS        float64  // interval of the courses, s
 	Problems      cell.Errors
 	NotCalculated []NotCalculated
 	Known         []KnownAnswer // solved by this very program, in groups of one source
@@ -32,6 +34,9 @@ type Item struct {
 	At          cell.Ref
 	Item, Value string
 }
+
+// Source is a spreadsheet that the import made the plan of.
+type Source struct{ File, SHA256 string }
 
 // NotCalculated is a product that could not be calculated.
 type NotCalculated struct {

@@ -274,7 +274,7 @@ func NewWorkbook(w io.Writer, h *Head) *Workbook {
 	return &Workbook{w: w, h: h, names: n,
 		findings: newGrid("Findings", findingColumns(h), h.Paper, n),
 		courses:  newGrid("Courses", courseColumns(h), h.Paper, n),
-		input:    newGrid("Input", inputColumns, h.Paper, n)}
+		input:    newGrid("Input", inputColumns(h), h.Paper, n)}
 }
 
 // unit is the user's unit of temperature.
@@ -329,7 +329,14 @@ func courseColumns(h *Head) []gridColumn {
 	return cs
 }
 
-var inputColumns = []gridColumn{{"Product", 30, 0}, {"Cell", 18, 0}, {"Column", 30, 0}, {"Typed", 30, 0}, {"Used", 30, 0}, {"Why", 60, 0}}
+// inputColumns end with where each value comes from, if the plan was imported.
+func inputColumns(h *Head) []gridColumn {
+	cs := []gridColumn{{"Product", 30, 0}, {"Cell", 18, 0}, {"Column", 30, 0}, {"Typed", 30, 0}, {"Used", 30, 0}, {"Why", 60, 0}}
+	if len(h.Sources) > 0 {
+		cs = append(cs, gridColumn{"From", 50, 0})
+	}
+	return cs
+}
 
 // Add writes one product; it may be forgotten afterwards.
 func (b *Workbook) Add(p *Product) error {
@@ -357,6 +364,7 @@ func (b *Workbook) reading(product string, r *cell.Reading) {
 	g.text(r.Typed)
 	g.text(r.Used)
 	g.text(r.Why)
+	g.text(r.From)
 	g.end()
 }
 
@@ -549,6 +557,9 @@ func (b *Workbook) about(g *grid) {
 	for _, r := range [][2]string{{"Plan", h.Plan}, {"SHA-256 of the plan", h.SHA256}, {"Program", "slowpoint " + h.Version}, {"Date", isoDate(h)}} {
 		g.words("", r[0], r[1])
 	}
+	for _, s := range h.Sources {
+		g.words("", "Made by the import from", s.File, s.SHA256)
+	}
 	for _, it := range h.Items {
 		g.words("", it.Item, it.Value, "", "", "", "", "", "", "", "", it.At.String())
 	}
@@ -560,7 +571,7 @@ func (b *Workbook) about(g *grid) {
 		g.words("")
 		g.words("", "Problems in the plan")
 		for _, e := range h.Problems {
-			g.words("", e.Level.String(), e.Typed, "", "", "", "", "", "", "", "", e.At.String(), strings.TrimSuffix(e.Msg+" – "+e.Hint, " – "))
+			g.words("", e.Level.String(), e.Typed, "", "", "", "", "", "", "", "", e.Where(), strings.TrimSuffix(e.Msg+" – "+e.Hint, " – "))
 		}
 	}
 	if bad := wrongAnswers(h.Known); bad > 0 {

@@ -21,7 +21,7 @@ func OnePDF(w io.Writer, h *Head, rows []Row, each func(func(*Product) error) er
 	d.nest = 1
 	if err := each(func(p *Product) error {
 		d.product(p)
-		return nil
+		return d.pdf.err()
 	}); err != nil {
 		return err
 	}
@@ -46,6 +46,9 @@ func (d *doc) summary(rows []Row) {
 		sentence += say("summary refused", len(h.NotCalculated))
 	}
 	d.para(sentence, style{size: 11, bold: true, after: 2})
+	if h.NotImported > 0 {
+		d.boxed([]string{counted(h.NotImported, "not imported")}, style{size: body, bold: true})
+	}
 	if len(h.NotCalculated) > 0 {
 		d.notCalculated()
 	}
@@ -116,8 +119,9 @@ func (d *doc) plan() {
 	for _, it := range h.Items {
 		rows = append(rows, [2]string{it.Item, it.Value})
 	}
-	d.pairs(append(rows, [2]string{say("key file"), h.Plan}, [2]string{say("key digest"), h.SHA256}, [2]string{say("key version"), h.Version},
-		[2]string{say("key date"), h.day()}), 45)
+	rows = append(rows, [2]string{say("key file"), h.Plan}, [2]string{say("key digest"), h.SHA256})
+	rows = append(rows, h.sources(len(h.Sources))...)
+	d.pairs(append(rows, [2]string{say("key version"), h.Version}, [2]string{say("key date"), h.day()}), 45)
 }
 
 // noted lists everything that was noted about the input, at most 200 lines.

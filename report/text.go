@@ -39,6 +39,7 @@ var textWords = map[string]string{
 	"plan":          "Plan",
 	"file":          "File: %s",
 	"digest":        "SHA-256 of the file: %s",
+	"source":        "Made by the import from: %s, SHA-256 %s",
 	"version":       "Program: slowpoint %s",
 	"date":          "Date: %s",
 	"item":          "%s: %s",
@@ -325,9 +326,9 @@ func (t *Text) readings(p *Product) {
 	}
 	t.heading(2, "input")
 	for _, r := range p.Readings {
-		s := fmt.Sprintf(textWords["default"], r.At, r.Column, r.Used)
+		s := fmt.Sprintf(textWords["default"], r.Where(), r.Column, r.Used)
 		if r.Typed != "" {
-			s = fmt.Sprintf(textWords["typed"], r.At, r.Column, r.Typed, r.Used)
+			s = fmt.Sprintf(textWords["typed"], r.Where(), r.Column, r.Typed, r.Used)
 		}
 		if r.Why != "" {
 			s += fmt.Sprintf(textWords["because"], r.Why)
@@ -337,9 +338,9 @@ func (t *Text) readings(p *Product) {
 }
 
 func (t *Text) problem(e cell.Error) {
-	at := e.At
+	at := e.Where()
 	e.At = cell.Ref{}
-	if at.IsZero() {
+	if at == "" {
 		t.item(e.Level.String() + ": " + e.Error())
 		return
 	}
@@ -387,6 +388,9 @@ func (t *Text) front() {
 	}
 	t.line("file", h.Plan)
 	t.line("digest", h.SHA256)
+	for _, s := range h.Sources {
+		t.line("source", s.File, s.SHA256)
+	}
 	t.line("version", h.Version)
 	if !h.Date.IsZero() {
 		t.line("date", h.day())
