@@ -149,6 +149,10 @@ func headOf(plan *workbook.Plan, o *checkOptions) (*report.Head, error) {
 	for _, it := range plan.Items {
 		h.Items = append(h.Items, report.Item(it))
 	}
+	for _, s := range plan.Sources {
+		h.Sources = append(h.Sources, report.Source(s))
+	}
+	h.NotImported = plan.NotImported
 	for _, n := range plan.NotCalculated {
 		h.NotCalculated = append(h.NotCalculated, report.NotCalculated(n))
 	}
