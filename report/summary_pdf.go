@@ -21,7 +21,7 @@ func OnePDF(w io.Writer, h *Head, rows []Row, each func(func(*Product) error) er
 	d.nest = 1
 	if err := each(func(p *Product) error {
 		d.product(p)
-		return nil
+		return d.pdf.err()
 	}); err != nil {
 		return err
 	}
