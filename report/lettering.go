@@ -10,12 +10,12 @@ import (
 	"github.com/jung-kurt/gofpdf"
 )
 
-// usual holds the characters beyond ASCII and Western European that the reports themselves use. With these, it is in every
-// cut-out of the fonts, so that nearly all documents share one.
-const usual = "µπ–—‘’“”„…•√≈≠≤≥−←→↑↓☐☑✓✗\uFFFD"
+// usual holds the characters beyond the Latin letters of Europe that the reports themselves use. With those it is in every cut-out
+// of the fonts, so that nearly all documents share one.
+const usual = "π–—‘’“”„…•√≈≠≤≥−←→↑↓☐☑✓✗\uFFFD"
 
-// always tells of characters that every cut-out holds: Latin-1 and the usual ones.
-func always(r rune) bool { return r < 0x100 || strings.ContainsRune(usual, r) }
+// always tells of characters that every cut-out holds: Latin up to U+017F and the usual ones.
+func always(r rune) bool { return r < 0x180 || strings.ContainsRune(usual, r) }
 
 // blocks are the runs of 128 characters that a document uses beyond those that are always there; each is cut out whole.
 type blocks [65536 / 128]bool
@@ -23,7 +23,7 @@ type blocks [65536 / 128]bool
 // add notes what clean text needs, and tells whether it needs more than the texts before.
 func (b *blocks) add(s string) (more bool) {
 	for _, r := range s {
-		if r >= 0x100 && r < 65536 && !b[r/128] && !always(r) {
+		if r < 65536 && !b[r/128] && !always(r) {
 			b[r/128], more = true, true
 		}
 	}

@@ -115,7 +115,7 @@ func TestArc(t *testing.T) {
 func TestLettering(t *testing.T) {
 	p := newPaper("A4", time.Unix(0, 0), "T", "C")
 	p.addPage()
-	words := []string{"Crème at 74 °C – done", "Żurek, Щи, Σούπα, Phở", "Żurek again", "Ünter Яблоко ☐"}
+	words := []string{"Crème, żurek at 74 °C – done", "Żurek, Щи, Σούπα, Phở", "Żurek again", "Ünter Яблоко ☐"}
 	for i, w := range words {
 		p.text(20, 30+10*float64(i), w, 10, i == 3, black)
 	}
@@ -126,7 +126,7 @@ func TestLettering(t *testing.T) {
 			t.Errorf("%q is missing in %q", w, got)
 		}
 	}
-	for k, want := range []int{2, 1} { // the one for Western Europe, and the one that holds the other blocks too, at once or later
+	for k, want := range []int{2, 1} { // the one for Latin letters, and the one that holds the other blocks too, at once or later
 		if p.fonts[k].n != want {
 			t.Errorf("weight %d: %d fonts, want %d", k, p.fonts[k].n, want)
 		}
@@ -145,16 +145,16 @@ func TestLettering(t *testing.T) {
 
 // A cut-out is made once for each set of blocks, and nobody gets another's bytes, for the library writes into them.
 func TestCutOut(t *testing.T) {
-	var none, latin blocks
-	if none.add("é – 74 °C ☐") {
-		t.Error("Western European text needs more than what is always there")
+	var none, cyrillic blocks
+	if none.add("é ż – 74 °C ☐") {
+		t.Error("Latin text needs more than what is always there")
 	}
-	if !latin.add("ż") || latin.add("Ż") {
-		t.Error("the block of ż is not added exactly once")
+	if !cyrillic.add("щ") || cyrillic.add("Щ") {
+		t.Error("the block of щ is not added exactly once")
 	}
-	a, b := cutOut(false, none), cutOut(false, latin)
+	a, b := cutOut(false, none), cutOut(false, cyrillic)
 	if len(b) <= len(a) {
-		t.Errorf("the font with ż has %d bytes, without %d", len(b), len(a))
+		t.Errorf("the font with щ has %d bytes, without %d", len(b), len(a))
 	}
 	kept := cutOuts.of[0][none]
 	again := cutOut(false, none)
