@@ -79,7 +79,7 @@ type candidate struct {
 	surface bool
 	path    path
 	nominal outcome
-	edge    bool // at the edge of the places where the clock started
+	edge    *onEdge // nil if not at the edge of the places where the clock started
 }
 
 // judgePlaces answers a question about every place of the limit and makes the finding of the least favourable one.
@@ -95,6 +95,12 @@ func (v *view) judgePlaces(q question) Finding {
 			best = i
 		}
 	}
+	edge := cs[best]
+	if edge.edge != nil && edge.nominal.verdict != NotApplicable {
+		if c, same := v.probed(edge, q); same {
+			cs, best = append(cs, c), len(cs)
+		}
+	}
 	o := cs[best].nominal
 	f := v.finding(o, q)
 	if s.medium == nil {
@@ -103,8 +109,9 @@ func (v *view) judgePlaces(q question) Finding {
 		if s.name == "" || s.surfaceOnly {
 			f.PlaceName = v.placeName(place)
 		}
-		if cs[best].edge && f.Verdict != NotApplicable {
-			f.Notes = append(f.Notes, say("note edge", holes{"start": v.l.startWords()}))
+		if edge.edge != nil && f.Verdict != NotApplicable {
+			f.Notes = append(f.Notes, v.edgeNote(edge, q, near(place, edge.place)))
+			f.MarginS = finite(edge.nominal.margin)
 		}
 	} else {
 		f.PlaceName = s.name
@@ -252,12 +259,11 @@ func (v *view) candidates(s scope, q question) []candidate {
 		})
 		add(p, v.c.spots[i].Surface && s.surfaceOnly)
 	}
-	inner := len(cs)
-	for _, p := range v.edges(s, q, cs) {
-		add(p, s.surfaceOnly)
-	}
-	for i := inner; i < len(cs); i++ {
-		cs[i].edge = true
+	for _, e := range v.edges(s, q, cs) {
+		n := len(cs)
+		if add(e.at.place(), s.surfaceOnly); len(cs) > n {
+			cs[n].edge = &e
+		}
 	}
 	return cs
 }

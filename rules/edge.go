@@ -10,12 +10,51 @@ import (
 // A clock that starts at a crossing runs only at the places that were ever above the temperature crossed: part of the food, with
 // an edge. A place just within that edge was there for a moment only and starts its clock at its peak, before its neighbours
 // on the warmer side fall to the crossing. So the time taken grows towards the edge, with an infinite slope, and its supremum over the
-// places that count is the limit at the edge. That supremum is the value: the place named, its value and its verdict are those of
-// a place whose peak is edgeK above the crossing, as near to the limit as the numbers go.
+// places that count is the limit at the edge. That supremum decides: verdict and margin are those of a place whose peak is edgeK
+// above the crossing, as near to the limit as the numbers go. The place named, and its value, are a probe's breadth within the edge
+// where the verdict is the same there: nobody can measure nearer, and the note tells the value at the edge.
 
 // edgeK is how far the peak of a place at an edge lies above the crossing, within half as much, K: what the search for a peak can
 // tell apart. For a chill of an hour it shortens the time by about a second.
 const edgeK = 1e-5
+
+// probeM is how near to an edge two places cannot be told apart: no probe is thinner, m (common practice, no source).
+const probeM = 4e-4
+
+// onEdge is a place on an edge, and which way the counting places lie on one of its axes: 1 or -1.
+type onEdge struct {
+	at     coordinates
+	axis   int
+	inward float64
+}
+
+// on makes the place of an edge that x is.
+func (e *edge) on(x coordinates) onEdge {
+	return onEdge{x, e.axis, math.Copysign(1, e.in[e.axis]-e.out[e.axis])}
+}
+
+// probed is the place a probe's breadth within an edge, unless a verdict is another one there.
+func (v *view) probed(edge candidate, q question) (candidate, bool) {
+	x := edge.edge.at
+	x[edge.edge.axis] = v.c.inside(edge.edge.axis, x[edge.edge.axis]+edge.edge.inward*probeM)
+	c := candidate{place: x.place(), surface: edge.surface, path: v.path(x.place()), edge: edge.edge}
+	c.nominal = q.measure(c.path, tilt{})
+	t := v.unfavourable()
+	t.rank = true
+	return c, c.nominal.verdict == edge.nominal.verdict && q.measure(c.path, t).verdict == q.measure(edge.path, t).verdict
+}
+
+// edgeNote tells that a finding's place lies at an edge, or a probe's breadth within it.
+func (v *view) edgeNote(edge candidate, q question, there bool) string {
+	h := holes{"start": v.l.startWords()}
+	if there || math.IsNaN(edge.nominal.value) {
+		return say("note at the edge", h)
+	}
+	if h["value"] = lasting(60*edge.nominal.value, 0); q.unit != "min" {
+		h["value"] = v.l.degrees(edge.nominal.value, 0)
+	}
+	return say("note edge", h)
+}
 
 // mostEdges is how many edges of a window are followed exactly, each way along each axis: the worst by a first look at all. The
 // first look is too rough to compare one axis with another.
@@ -42,7 +81,7 @@ func (x coordinates) place() model.Place {
 
 // edges finds places at the edges of those that count for a clock, in each window: along the axes between neighbouring spots. The
 // least favourable is moved along its edge. Edges that are plainly more favourable than the worst candidate are left out.
-func (v *view) edges(s scope, q question, cs []candidate) []model.Place {
+func (v *view) edges(s scope, q question, cs []candidate) []onEdge {
 	if !v.l.clocked() || v.h.Recorded || len(s.spots) == 0 {
 		return nil
 	}
@@ -54,7 +93,7 @@ func (v *view) edges(s scope, q question, cs []candidate) []model.Place {
 	for _, i := range s.spots {
 		within[i] = true
 	}
-	var found []model.Place
+	var found []onEdge
 	for _, w := range ws {
 		pk := v.peaks(s.spots, w)
 		slid := false
@@ -68,7 +107,7 @@ func (v *view) edges(s scope, q question, cs []candidate) []model.Place {
 			most := math.Inf(-1)
 			for _, e := range v.paired(pk, within, w, level, t, q, cs) {
 				if x, ok := v.follow(e, e.in); ok {
-					found = append(found, x.place())
+					found = append(found, e.on(x))
 					if bad := q.measure(v.path(x.place()), t).bad; bad > most {
 						worst, by, most = x, e, bad
 					}
@@ -78,7 +117,7 @@ func (v *view) edges(s scope, q question, cs []candidate) []model.Place {
 				}
 			}
 			if !slid && !math.IsInf(most, -1) {
-				found, slid = append(found, v.slide(by, worst, q, s.surfaceOnly).place()), true
+				found, slid = append(found, by.on(v.slide(by, worst, q, s.surfaceOnly))), true
 			}
 		}
 	}

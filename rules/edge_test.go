@@ -2,6 +2,7 @@ package rules
 
 import (
 	"math"
+	"strings"
 	"testing"
 
 	"slowpoint/model"
@@ -115,6 +116,12 @@ func (s series) took(x, from, to, endS float64) float64 {
 	return (fall(to, top, endS) - fall(from, top, endS)) / 60
 }
 
+// atEdge is the time taken at the edge, min: what is left of the time allowed there tells it.
+func atEdge(f Finding) *float64 {
+	took := *f.Required - *f.MarginS/60
+	return &took
+}
+
 // The longest time of a clock that starts at a crossing is the supremum over all places that were ever above it, and lies at the
 // edge of those. Here against the exact course: it agrees at the edge, no place among many takes longer, and the coarse grid of
 // 41 places reads 6 % short.
@@ -149,18 +156,25 @@ func TestClockAtTheEdgeOfASlab(t *testing.T) {
 	}
 	l := Limit{Kind: CoolWithin, FromC: c(from), ToC: c(to), TimeS: min_(254), Clock: crossing}
 	f := one(t, l, h)
-	closeTo(t, "value", f.Value, supremum, 0.05)
-	if at := math.Abs(f.Place.UpM); math.Abs(at-in) > 1e-5 {
+	closeTo(t, "time at the edge", atEdge(f), supremum, 0.05)
+	if at := math.Abs(f.Place.UpM); math.Abs(at-probeM-in) > 1e-5 {
 		t.Errorf("place %g mm from the middle, the edge is at %g mm", 1000*at, 1000*in)
 	}
-	closeTo(t, "value at the place named", f.Value, took(math.Max(math.Abs(f.Place.UpM), in)), 0.05)
+	closeTo(t, "value at the place named", f.Value, took(math.Abs(f.Place.UpM)), 0.01)
+	if want := "at the edge itself, where it only just was, it is " + lasting(60*supremum, 0); !strings.Contains(strings.Join(f.Notes, " "), want) {
+		t.Errorf("no note says %q: %q", want, f.Notes)
+	}
 	for _, x := range []struct {
 		allowedMin float64
 		want       Verdict
-	}{{supremum + 1.5, Met}, {supremum - 1.5, NotMet}} {
+	}{{supremum + 1.5, Met}, {supremum - 1.5, NotMet}} { // the latter is met a probe's breadth within
 		l.TimeS = min_(x.allowedMin)
-		if f := one(t, l, h); f.Verdict != x.want {
+		f := one(t, l, h)
+		if f.Verdict != x.want {
 			t.Errorf("%g min allowed: %v (%s), want %v", x.allowedMin, f.Verdict, f.Why, x.want)
+		}
+		if said := *f.Value > x.allowedMin; said != (x.want == NotMet) {
+			t.Errorf("%g min allowed: %v with the value %g", x.allowedMin, f.Verdict, *f.Value)
 		}
 	}
 }
@@ -187,7 +201,7 @@ func TestClockAtTheEdgeOfASecondWindow(t *testing.T) {
 		}
 	}
 	f := one(t, l, h)
-	closeTo(t, "value", f.Value, fall(in, second, h.EndS()), 0.1)
+	closeTo(t, "time at the edge", atEdge(f), fall(in, second, h.EndS()), 0.1)
 	if *f.ClockStartS < second {
 		t.Errorf("the clock of the first window decides: %s", f.Why)
 	}
@@ -233,7 +247,7 @@ func TestClockAtTheEdgeOfACylinder(t *testing.T) {
 				t.Fatalf("%d edges: the case does not show what it should", edges)
 			}
 			f := one(t, Limit{Kind: CoolWithin, FromC: &x.from, ToC: &x.to, TimeS: min_(400), Clock: crossing}, h)
-			closeTo(t, "value", f.Value, longest, 0.1)
+			closeTo(t, "time at the edge", atEdge(f), longest, 0.1)
 		})
 	}
 }
@@ -274,5 +288,5 @@ func TestClockAtTheEdgeOfABrick(t *testing.T) {
 		t.Fatalf("%d edges: the case does not show what it should", edges)
 	}
 	f := one(t, Limit{Kind: CoolWithin, FromC: c(60), ToC: c(10), TimeS: min_(150), Clock: crossing}, h)
-	closeTo(t, "value", f.Value, longest, 0.3)
+	closeTo(t, "time at the edge", atEdge(f), longest, 0.3)
 }
