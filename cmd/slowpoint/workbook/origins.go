@@ -283,7 +283,7 @@ func (f *formulas) more() string {
 	if f.n < 2 {
 		return ""
 	}
-	return fmt.Sprintf(" (and %s more, down to row %d)", rowCount(f.n-1), f.last.Row)
+	return fmt.Sprintf(" (and %d more, down to row %d)", f.n-1, f.last.Row)
 }
 
 func rowCount(n int) string {

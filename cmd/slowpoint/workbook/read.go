@@ -201,6 +201,7 @@ func (r *reader) read() {
 			r.tables[s.Name] = r.open(g, s)
 		}
 	}
+	r.readOrigins() // before the cells of Steps are let go
 	r.readFoods()
 	r.readCourses()
 	r.readProducts()
@@ -237,7 +238,6 @@ func (r *reader) finish() {
 	if len(r.products) == 0 && len(r.unread["Products"]) == 0 {
 		r.add(noProducts.problem(cell.Ref{Sheet: r.grids["Products"].Name}, cell.Fault, "", ""))
 	}
-	r.readOrigins()
 	for _, p := range r.products {
 		if len(p.because) == 0 {
 			p.origins = r.plan.origins

@@ -20,7 +20,10 @@ import (
 )
 
 // manyProducts writes a plan of n products with a process of five steps each, and a limit for all of them.
-func manyProducts(t testing.TB, n int) string {
+func manyProducts(t testing.TB, n int) string { return many(t, n, false) }
+
+// many is manyProducts; imported: with the origins of the rows of Products and Steps, as the import writes them.
+func many(t testing.TB, n int, imported bool) string {
 	t.Helper()
 	f := excelize.NewFile()
 	defer f.Close()
@@ -34,6 +37,12 @@ func manyProducts(t testing.TB, n int) string {
 		}
 		row := 1
 		put := func(v ...any) {
+			switch made := imported && (name == "Products" || name == "Steps"); {
+			case made && row == 1:
+				v = append(v, FromHeading)
+			case made:
+				v = append(v, stamped(fmt.Sprintf("Recipes.xlsx › Cook-chill row %d part %v", row, v[2]), header, v))
+			}
 			name, _ := excelize.CoordinatesToCellName(1, row)
 			if err := w.SetRow(name, v); err != nil {
 				t.Fatal(err)
@@ -67,6 +76,12 @@ func manyProducts(t testing.TB, n int) string {
 			put(fmt.Sprintf("Limit %d", i), "hold", "cook", "all", 60+i, 2, "total", "House rules", fmt.Sprint(i), "2026")
 		}
 	})
+	if imported {
+		sheet("Origins", []any{"File", "SHA-256", "Their sheet", "Sheet", "Part", "Column", "Place"}, func(put func(...any)) {
+			put("Recipes.xlsx", recipesDigest, "Cook-chill", "Products", nil, "Thickness", "F")
+			put("Recipes.xlsx", recipesDigest, "Cook-chill", "Steps", "cook", "Duration", "H")
+		})
+	}
 	f.DeleteSheet("Sheet1")
 	name := filepath.Join(t.TempDir(), "many.xlsx")
 	if err := f.SaveAs(name); err != nil {
@@ -92,7 +107,13 @@ func TestManyProducts(t *testing.T) {
 	if testing.Short() {
 		t.Skip("a big workbook")
 	}
-	name := manyProducts(t, 10_000)
+	for _, imported := range []bool{false, true} {
+		t.Run(map[bool]string{false: "typed", true: "imported"}[imported], func(t *testing.T) { readMany(t, imported) })
+	}
+}
+
+func readMany(t *testing.T, imported bool) {
+	name := many(t, 10_000, imported)
 	var before, after runtime.MemStats
 	runtime.GC()
 	runtime.ReadMemStats(&before)
@@ -109,6 +130,9 @@ func TestManyProducts(t *testing.T) {
 	t.Logf("%.0f MB kept, %.0f MB of memory in all", kept, float64(after.Sys)/(1<<20))
 	if kept > 80 {
 		t.Errorf("%.0f MB kept", kept)
+	}
+	if got, want := p.origins.of(cell.Ref{Sheet: "Steps", Row: 49_997, Col: 4}), "Recipes.xlsx › Cook-chill!H49997"; imported && got != want { // 49,997 = 5 × 9,999 + 2: a cook
+		t.Errorf("from %q, want %q", got, want)
 	}
 	runtime.KeepAlive(p)
 }
