@@ -68,5 +68,6 @@ type Result struct {
 	Left     []Left
 	Not      []NotImported
 	Counts   []Count
+	Changes  []Change    // since an earlier plan; none if it is not compared
 	Problems cell.Errors // of the mapping and of their files, in order; At.Sheet is "Recipes.xlsx › Cook-chill" for theirs, the sheet for the mapping
 }

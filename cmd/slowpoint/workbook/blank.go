@@ -142,6 +142,8 @@ func (l blankLook) style(figure bool) *excelize.Style {
 // verbatim are columns whose words a spreadsheet would turn into dates or numbers.
 var verbatim = []string{"Value", "Clause", "Edition", "Code", "Recipe version", "Batch"}
 
+func isVerbatim(c *Column) bool { return slices.Contains(verbatim, c.Heading) }
+
 // sheet writes one sheet: help, headings with notes, lists, the rows.
 func (k *blanks) sheet(s *Sheet, rows []map[string]string) error {
 	f := k.f
@@ -192,7 +194,7 @@ func (k *blanks) column(s *Sheet, n int, c *Column, rows []map[string]string, la
 	}
 	if c.Quantity != nil {
 		body = k.figure
-	} else if slices.Contains(verbatim, c.Heading) {
+	} else if isVerbatim(c) {
 		body = k.verbatim
 	}
 	wide = c.width(rows)

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"slowpoint/model/cell"
@@ -33,9 +34,12 @@ func TablesOf(grids []*Grid, name, digest string, list []*Sheet) *Tables {
 	if len(grids) > 0 {
 		r.sheets(grids)
 	}
+	if slices.Contains(list, SheetNamed("Plan")) && len(grids) > 0 {
+		r.planItems() // they may say the decimal sign
+	}
 	r.decimalSign()
 	for _, s := range list {
-		if g := r.grids[s.Name]; g != nil {
+		if g := r.grids[s.Name]; g != nil && r.tables[s.Name] == nil {
 			r.tables[s.Name] = r.open(g, s)
 		}
 	}

@@ -1,0 +1,344 @@
+package intake
+
+import (
+	"fmt"
+	"path/filepath"
+	"slices"
+	"strconv"
+	"strings"
+
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model/cell"
+	"slowpoint/model/unit"
+)
+
+// Change is one difference from an earlier plan.
+type Change struct {
+	Product string // or "process Chill", "limit 57 to 21": what it is a row of
+	What    string // "new", "gone", or the column, behind its step, face or point
+	Before  string // as it stood there, with its unit; "" for a blank
+	Now     string
+	Cell    string // of their files or of the mapping: "Recipes.xlsx › Cook-chill!F17"; "" for what is gone
+}
+
+// String tells it in a line: "Lasagne: Thickness 45 mm → 50 mm (Recipes.xlsx › Cook-chill!F17)".
+func (c Change) String() string {
+	s := c.Product + ": " + c.What
+	if c.Before+c.Now != "" {
+		s += " " + orBlank(c.Before) + " → " + orBlank(c.Now)
+	}
+	if c.Cell != "" {
+		s += " (" + c.Cell + ")"
+	}
+	return s
+}
+
+func orBlank(s string) string {
+	if s == "" {
+		return "blank"
+	}
+	return s
+}
+
+// keys are the columns that name a row of a sheet. Rows with the same names are told apart by their order; so are those of a sheet that
+// is not listed, which are named by their first column.
+var keys = map[string][]string{
+	"Products": {"Product"}, "Layers": {"Product", "Layer"}, "Steps": {"Process", "Product", "Step"}, "Faces": {"Process", "Product", "Step", "Face"}, "Points": {"Product", "Point"},
+}
+
+// nouns name what a row of a sheet belongs to, by its first column; a product needs none.
+var nouns = map[string]string{"Products": "", "Layers": "", "Points": "", "Steps": "process ", "Faces": "process ", "Foods": "food ", "Courses": "course ",
+	"Limits": "limit ", "Groups": "group ", "Tables": "table ", "Plan": "plan: "}
+
+// held is a value as it is compared.
+type held struct {
+	shown string  // as it stood, with its unit
+	si    float64 // in the unit that the program computes in
+	ok    bool    // si is known; otherwise the words are compared
+	at    string
+}
+
+// item is a row as it is compared.
+type item struct {
+	owner, what string // "Lasagne"; "chill, top"
+	first       string // its first column, by key
+	key         string // all its names
+	values      map[*workbook.Column]held
+	at          string
+}
+
+// stock is a plan as it is compared: its rows by sheet, in order and by their names.
+type stock struct {
+	inOrder map[*workbook.Sheet][]*item
+	by      map[string]*item
+	count   map[string]int // rows of the same names
+}
+
+func newStock() *stock {
+	return &stock{inOrder: map[*workbook.Sheet][]*item{}, by: map[string]*item{}, count: map[string]int{}}
+}
+
+func (s *stock) add(sheet *workbook.Sheet, values map[*workbook.Column]held, at string) {
+	it := &item{values: values, at: at}
+	named, whole := keys[sheet.Name], []string{sheet.Name}
+	if named == nil {
+		named = []string{sheet.Columns[0].Heading}
+	}
+	var what []string
+	for i, h := range named {
+		v := values[sheet.Column(h)].shown
+		whole = append(whole, workbook.Key(v))
+		switch {
+		case i == 0:
+			it.owner, it.first = nouns[sheet.Name]+v, workbook.Key(v)
+		case v != "":
+			what = append(what, v)
+		}
+	}
+	it.what = strings.Join(what, ", ")
+	key := strings.Join(whole, "\x1f")
+	s.count[key]++
+	n := s.count[key]
+	it.key = key + "\x1f" + strconv.Itoa(n)
+	if n > 1 || slices.Contains([]string{"Courses", "Tables"}, sheet.Name) {
+		it.what = strings.TrimSpace(fmt.Sprintf("%s row %d", it.what, n))
+	}
+	s.by[it.key] = it
+	s.inOrder[sheet] = append(s.inOrder[sheet], it)
+}
+
+// Since compares what the spreadsheets gave with an earlier plan, a workbook or a folder: what is new, what is gone, and every value
+// that changed. Two spellings of one value in the unit that the program computes in, such as 1 h and 60 min, are no change. The error
+// says in one sentence why the plan cannot be read.
+func Since(name string, r *Result) ([]Change, error) {
+	t, err := workbook.ReadTables(name, "plan", workbook.Sheets)
+	if err != nil {
+		return nil, err
+	}
+	if t.Grid("Products") == nil {
+		return nil, fmt.Errorf("%s: this is not a plan: it has no visible sheet Products; give the plan that was written by an earlier import", filepath.Base(name))
+	}
+	return compare(stockOf(t), r.stock()), nil
+}
+
+// stockOf is an earlier plan as it is compared.
+func stockOf(t *workbook.Tables) *stock {
+	s := newStock()
+	sign := unit.Unsure
+	for _, l := range t.Lines("Plan") {
+		if isDecimalSign(l) {
+			sign = map[string]unit.Decimal{"point": unit.Point, "comma": unit.Comma}[workbook.Key(l.Entry("Value").Text)]
+		}
+	}
+	for _, sheet := range workbook.Sheets {
+		for _, l := range t.Lines(sheet.Name) {
+			s.line(sheet, l, sign, cell.Ref.String)
+		}
+	}
+	return s
+}
+
+// line adds a row that was read; where tells its places.
+func (s *stock) line(sheet *workbook.Sheet, l *workbook.Line, sign unit.Decimal, where func(cell.Ref) string) {
+	if sheet.Name == "Plan" && isDecimalSign(l) {
+		return // how the others are written
+	}
+	values := map[*workbook.Column]held{}
+	for _, c := range sheet.Columns {
+		if !l.Filled(c.Heading) {
+			continue
+		}
+		e := l.Entry(c.Heading)
+		h := held{shown: e.Text, at: where(l.At(c.Heading))}
+		switch {
+		case c.Quantity == nil:
+			if e.Form == workbook.Date {
+				h.shown = l.Words(c.Heading)
+			}
+		case l.Value(c.Heading) != nil:
+			v := l.Value(c.Heading)
+			h.shown, h.si, h.ok = v.Typed, v.Computed, true
+		default:
+			if v, m := c.Quantity.Parse(e.Text, l.Unit(c.Heading), sign); m == nil {
+				h.shown, h.si, h.ok = v.Typed, v.Computed, true
+			}
+		}
+		values[c] = h
+	}
+	s.add(sheet, values, where(l.Ref()))
+}
+
+// stock is the result as it is compared, in the order in which it is written.
+func (r *Result) stock() *stock {
+	s := newStock()
+	theirs := func(at cell.Ref) string {
+		return r.Where(Place{File: -1, Sheet: at.Sheet, Row: at.Row, Col: at.Col})
+	}
+	for _, sheet := range workbook.Sheets {
+		for _, l := range r.Copied[sheet.Name] {
+			if sound(sheet, l) {
+				s.line(sheet, l, unit.Unsure, theirs)
+			}
+		}
+	}
+	for i := range r.Made {
+		m := &r.Made[i]
+		values := map[*workbook.Column]held{}
+		for k := range m.Values {
+			if v := &m.Values[k]; v.Text != "" {
+				values[v.Column] = r.held(v)
+			}
+		}
+		s.add(m.Sheet, values, r.Where(m.Record))
+	}
+	return s
+}
+
+// held is a made value as it is compared.
+func (r *Result) held(v *Value) held {
+	h := held{shown: v.Text}
+	switch {
+	case v.At.Row > 0 && v.At.Col > 0:
+		h.at = r.Where(v.At)
+	case v.Const != "":
+		h.at = r.Mapping + " › " + v.Const
+	}
+	q := v.Column.Quantity
+	if q == nil {
+		return h
+	}
+	u := unitOf(v)
+	if u == nil && q.Plain() {
+		u = &q.Units[0]
+	}
+	if x, m := q.Parse(v.Text, u, unit.Point); m == nil {
+		h.shown, h.si, h.ok = x.Typed, x.Computed, true
+	}
+	return h
+}
+
+// same tells whether two values mean the same.
+func same(c *workbook.Column, a, b held) bool {
+	switch {
+	case a.ok && b.ok:
+		return a.si == b.si
+	case c.Choices != nil:
+		return workbook.Key(a.shown) == workbook.Key(b.shown)
+	}
+	return a.shown == b.shown
+}
+
+// parts name what the further rows of an owner are.
+var parts = map[string]string{"Steps": "step ", "Faces": "face ", "Points": "point ", "Layers": "layer "}
+
+// compare lists what changed, in the order of the sheets; what is gone comes last in each.
+func compare(old, now *stock) []Change {
+	var out []Change
+	fresh, lost := map[string]bool{}, map[string]bool{} // products, by key
+	for _, s := range workbook.Sheets {
+		before, after := owners(old.inOrder[s]), owners(now.inOrder[s])
+		told := map[string]bool{}
+		found := map[*item]bool{}
+		for _, it := range now.inOrder[s] {
+			was := old.by[it.key]
+			if was != nil {
+				found[was] = true
+				out = append(out, changes(s, was, it)...)
+				continue
+			}
+			if s.Name == "Products" {
+				fresh[it.first] = true
+			}
+			out = append(out, only(s, it, "new", before, told, fresh)...)
+		}
+		told = map[string]bool{}
+		for _, it := range old.inOrder[s] {
+			if found[it] {
+				continue
+			}
+			if s.Name == "Products" {
+				lost[it.first] = true
+			}
+			gone := *it
+			gone.at = ""
+			out = append(out, only(s, &gone, "gone", after, told, lost)...)
+		}
+		if s.Name == "Steps" {
+			out = append(out, reordered(old, now, s)...)
+		}
+	}
+	return out
+}
+
+// owners are the first columns of rows, by key.
+func owners(items []*item) map[string]bool {
+	out := map[string]bool{}
+	for _, it := range items {
+		out[it.first] = true
+	}
+	return out
+}
+
+// only tells of a row that the other plan lacks: once an owner if that has none of the owner's, and not at all for the rows of a product
+// that is new or gone itself.
+func only(s *workbook.Sheet, it *item, word string, other, told, products map[string]bool) []Change {
+	switch {
+	case s.Name != "Products" && products[it.first] && nouns[s.Name] != "food ":
+		return nil
+	case other[it.first]:
+		return []Change{{Product: it.owner, What: strings.TrimSpace(parts[s.Name] + it.what + " " + word), Cell: it.at}}
+	case told[it.first]:
+		return nil
+	}
+	told[it.first] = true
+	return []Change{{Product: it.owner, What: word, Cell: it.at}}
+}
+
+// changes lists the values that differ between two rows of the same names.
+func changes(s *workbook.Sheet, old, now *item) []Change {
+	var out []Change
+	for _, c := range s.Columns {
+		a, was := old.values[c]
+		b, is := now.values[c]
+		if slices.Contains(keys[s.Name], c.Heading) || was == is && (!was || same(c, a, b)) {
+			continue
+		}
+		what := c.Heading
+		if now.what != "" {
+			what = now.what + ": " + what
+		}
+		at := b.at
+		if at == "" {
+			at = now.at
+		}
+		out = append(out, Change{Product: now.owner, What: what, Before: a.shown, Now: b.shown, Cell: at})
+	}
+	return out
+}
+
+// reordered tells of processes whose steps stand in another order than before.
+func reordered(old, now *stock, s *workbook.Sheet) []Change {
+	order := func(of, with *stock) (first []string, names map[string][]string, at map[string]*item) {
+		names, at = map[string][]string{}, map[string]*item{}
+		for _, it := range of.inOrder[s] {
+			if with.by[it.key] == nil {
+				continue
+			}
+			if at[it.first] == nil {
+				at[it.first] = it
+				first = append(first, it.first)
+			}
+			names[it.first] = append(names[it.first], it.what)
+		}
+		return first, names, at
+	}
+	_, before, _ := order(old, now)
+	first, after, at := order(now, old)
+	var out []Change
+	for _, p := range first {
+		if !slices.EqualFunc(before[p], after[p], func(a, b string) bool { return workbook.Key(a) == workbook.Key(b) }) {
+			out = append(out, Change{Product: at[p].owner, What: "order of steps", Before: strings.Join(before[p], "; "), Now: strings.Join(after[p], "; "), Cell: at[p].at})
+		}
+	}
+	return out
+}
