@@ -94,7 +94,7 @@ func (x *sheet) from(columns ...string) string {
 	for _, r := range x.p.Readings {
 		for _, c := range columns {
 			if r.Column == c && (r.At.Sheet == x.p.Product.At.Sheet || x.p.Product.At.IsZero()) && r.Typed != "" {
-				s = append(s, say("factor typed", r.Typed, r.At.String()))
+				s = append(s, say("factor typed", r.Typed, r.Where()))
 			}
 		}
 	}
