@@ -246,6 +246,18 @@ func pointed(s string, d Decimal) (string, *Mistake) {
 	return out.Replace(s), nil
 }
 
+// Pointed writes a typed number with a decimal point and without signs between thousands; false if the text is a fraction, or anything
+// but one number without a unit.
+func Pointed(text string, d Decimal) (string, bool) {
+	s := tidy(text)
+	m := decimal.FindStringSubmatch(s)
+	if m == nil || len(m[0]) != len(s) {
+		return "", false
+	}
+	digits, found := pointed(m[2], d)
+	return strings.TrimPrefix(m[1], "+") + strings.TrimSuffix(digits, ".") + m[3], found == nil
+}
+
 const bad Decimal = -1
 
 // signs tells which decimal sign a number shows, or that it may be a sign between thousands as well.

@@ -243,3 +243,6 @@ func (c *Column) refuses(x float64) (*saying, []string) {
 	}
 	return nil, nil
 }
+
+// Fill puts arguments into a wording: {1} is the first.
+func Fill(wording string, args ...string) string { return fill(wording, args) }

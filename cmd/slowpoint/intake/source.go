@@ -1,0 +1,402 @@
+package intake
+
+import (
+	"fmt"
+	"strconv"
+	"strings"
+
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model/cell"
+	"slowpoint/model/unit"
+)
+
+// opened is one of their sheets as one source reads it.
+type opened struct {
+	im      *importer
+	src     *source
+	file    int
+	grid    *workbook.Grid
+	label   string           // "Recipes.xlsx › Cook-chill", or the file for CSV
+	lines   []int            // of each where: its column (rows) or row (columns); 0: none
+	heads   []heading        // of each where: what stands there
+	hits    [][]spotAt       // blocks, sheet: of each where: its labels
+	units   []headUnit       // of each mapped
+	merged  []workbook.Block // rows, columns: those that records may have a part of
+	told    bool             // that it has no block
+	width   int              // the last line with a heading; 0: unknown
+	fault   *cell.Error      // why no record of the sheet is imported
+	decimal unit.Decimal
+	shown   string // the cell that shows the decimal sign; "" if the mapping says it
+
+	cells   []found           // of each where, of the record at hand
+	across  []*workbook.Entry // rows: the cells of the row at hand, by column
+	row     *workbook.Row     // rows: the row at hand
+	from    int               // first row (blocks, sheet) or the column (columns) of the record at hand
+	to      int               // its last row
+	tallies [3][]tally        // of each where: formulas, links, signs by evidence
+	file1   workbook.Entry    // the file's name
+	sheet1  workbook.Entry    // the sheet's name
+}
+
+// heading is what stands over the values of a where.
+type heading struct {
+	text string
+	at   cell.Ref
+}
+
+// headUnit is the unit of a mapped column, of the heading that it was found for.
+type headUnit struct {
+	known   bool
+	heading string
+	unit    *unit.Unit
+	fault   *cell.Error
+	told    bool // that it has none
+}
+
+// spotAt is a cell of a grid.
+type spotAt struct{ row, col int }
+
+// found is a cell of a record.
+type found struct {
+	e        *workbook.Entry
+	row, col int
+	label    string // of blocks and sheets: the label, as it stands there
+	labelAt  spotAt
+	lacks    bool   // its label is not there
+	twice    spotAt // its label is there twice
+}
+
+var blank workbook.Entry
+
+// tally counts cells of a column of which one thing is told once.
+type tally struct {
+	first cell.Ref
+	typed string
+	used  string
+	n     int
+}
+
+func (o *opened) ref(row, col int) cell.Ref { return cell.Ref{Sheet: o.label, Row: row, Col: col} }
+
+// open finds the headings of a sheet. What is wrong is told; then nothing of the sheet is imported.
+func (im *importer) open(src *source, file int, g *workbook.Grid) *opened {
+	o := &opened{im: im, src: src, file: file, grid: g, label: im.label(file, g), decimal: src.decimal}
+	n := len(src.wheres)
+	o.lines, o.heads, o.hits, o.cells = make([]int, n), make([]heading, n), make([][]spotAt, n), make([]found, n)
+	o.units = make([]headUnit, len(src.mapped))
+	for i := range o.tallies {
+		o.tallies[i] = make([]tally, n)
+	}
+	o.file1 = workbook.Entry{Kind: workbook.Text, Text: im.files[file].Name}
+	o.sheet1 = workbook.Entry{Kind: workbook.Text, Text: g.Name}
+	if g.Refused != "" {
+		o.refuse(cell.Error{At: cell.Ref{Sheet: o.label}, Msg: g.Refused, Hint: g.Mend})
+		return o
+	}
+	if len(g.Rows) == 0 {
+		im.problems.Add(sheetEmpty.problem(cell.Ref{Sheet: o.label}, cell.Warning, "", ""))
+		return o
+	}
+	switch src.layout {
+	case rowLayout, columnLayout:
+		o.headings()
+	default:
+		o.labels()
+	}
+	o.hiddenHeads()
+	return o
+}
+
+// refuse tells why no record of the sheet is imported; the first of several reasons is kept.
+func (o *opened) refuse(e cell.Error) {
+	o.im.problems.Add(e)
+	if o.fault == nil {
+		o.fault = &e
+	}
+}
+
+// cell gives a cell by its line (column of rows, row of columns) and its place among the headings.
+func (o *opened) headCell(line, head int) *workbook.Entry {
+	row, col := head, line
+	if o.src.layout == columnLayout {
+		row, col = line, head
+	}
+	if b := o.grid.Merge(row, col); b != nil {
+		row, col = b.Top, b.Left
+	}
+	if r := o.grid.Row(row); r != nil {
+		return r.At(col)
+	}
+	return &blank
+}
+
+func (o *opened) headRef(line, head int) cell.Ref {
+	if o.src.layout == columnLayout {
+		return o.ref(line, head)
+	}
+	return o.ref(head, line)
+}
+
+// headLines are the columns (or rows) that may have a heading, in order.
+func (o *opened) headLines() (last int) {
+	if o.src.layout == columnLayout {
+		return o.grid.Rows[len(o.grid.Rows)-1].N
+	}
+	for h := o.src.heads[0]; h <= o.src.heads[1]; h++ {
+		if r := o.grid.Row(h); r != nil {
+			last = max(last, int(r.Cells[len(r.Cells)-1].Col))
+		}
+	}
+	for _, b := range o.grid.Merged {
+		if b.Top <= o.src.heads[1] && b.Bottom >= o.src.heads[0] {
+			last = max(last, min(b.Right, 512))
+		}
+	}
+	return last
+}
+
+// headings finds the line of every where that is named by its heading.
+func (o *opened) headings() {
+	src := o.src
+	exact, loose := map[string][]int{}, map[string][]int{}
+	var known []string
+	texts := map[int]string{}
+	last := o.headLines()
+	for line := 1; line <= last; line++ {
+		if src.layout == columnLayout && o.grid.Row(line) == nil {
+			continue
+		}
+		group, name := o.headCell(line, src.heads[0]).Text, ""
+		if src.heads[1] > src.heads[0] {
+			if name = o.headCell(line, src.heads[1]).Text; name == group {
+				group = ""
+			}
+		} else {
+			group, name = "", group
+		}
+		full := name
+		switch {
+		case name == "" && group == "":
+			continue
+		case name == "":
+			full = group
+		case group != "":
+			full = group + " › " + name
+			loose[headingKey(name)] = append(loose[headingKey(name)], line)
+		}
+		o.width = line
+		texts[line] = full
+		known = append(known, full)
+		exact[headingKey(full)] = append(exact[headingKey(full)], line)
+		if bare, in := workbook.SplitHeading(full); in != "" {
+			loose[headingKey(bare)] = append(loose[headingKey(bare)], line)
+		}
+	}
+	if len(known) == 0 {
+		for _, w := range src.wheres {
+			if w.kind == byName {
+				o.refuse(headRowBlank.problem(cell.Ref{Sheet: o.label}, cell.Fault, "", "", o.headPlace(), src.line.At("Heading").String()))
+				return
+			}
+		}
+	}
+	for i, w := range src.wheres {
+		switch w.kind {
+		case byNumber:
+			o.lines[i] = w.col + w.row
+		case byName:
+			lines := exact[w.key]
+			if len(lines) == 0 {
+				lines = loose[w.key]
+			}
+			if len(lines) == 0 {
+				o.refuse(headUnknown.problem(w.at, cell.Fault, "", w.text, o.label, workbook.Meant(w.text, known), example[src.layout]))
+				continue
+			}
+			if len(lines) > 1 {
+				o.refuse(headTwice.problem(w.at, cell.Fault, "", w.text, o.label, o.named(lines), "="+o.lineName(lines[0])))
+				continue
+			}
+			o.lines[i] = lines[0]
+		default:
+			continue
+		}
+		if line := o.lines[i]; line > 0 {
+			o.heads[i] = heading{texts[line], o.headRef(line, src.heads[1])}
+		}
+	}
+	o.dataMerges()
+	for i, m := range src.mapped {
+		if t := o.heads[m.where].text; t != "" || m.unit != nil {
+			o.unitOf(i, t, o.heads[m.where].at)
+		}
+	}
+}
+
+// headPlace names the heading rows or columns.
+func (o *opened) headPlace() string {
+	a, b := o.headName(o.src.heads[0]), o.headName(o.src.heads[1])
+	what := "row"
+	if o.src.layout == columnLayout {
+		what = "column"
+	}
+	if a == b {
+		return what + " " + a
+	}
+	return what + "s " + a + " and " + b
+}
+
+func (o *opened) headName(n int) string {
+	if o.src.layout == columnLayout {
+		return cell.ColumnName(n)
+	}
+	return strconv.Itoa(n)
+}
+
+func (o *opened) lineName(n int) string {
+	if o.src.layout == columnLayout {
+		return strconv.Itoa(n)
+	}
+	return cell.ColumnName(n)
+}
+
+func (o *opened) named(lines []int) string {
+	var out []string
+	for _, l := range lines {
+		out = append(out, o.lineName(l))
+	}
+	what := "columns "
+	if o.src.layout == columnLayout {
+		what = "rows "
+	}
+	return what + strings.Join(out, ", ")
+}
+
+// dataMerges keeps the merged cells that hold, or hide, a value.
+func (o *opened) dataMerges() {
+	used := map[int]bool{}
+	for _, l := range o.lines {
+		used[l] = true
+	}
+	for _, b := range o.grid.Merged {
+		end, left, right := b.Bottom, b.Left, b.Right
+		if o.src.layout == columnLayout {
+			end, left, right = b.Right, b.Top, b.Bottom
+		}
+		if end <= o.src.heads[1] || b.Left == b.Right && b.Top == b.Bottom {
+			continue
+		}
+		for l := range used {
+			if l >= left && l <= right {
+				o.merged = append(o.merged, b)
+				break
+			}
+		}
+	}
+}
+
+// unitOf finds the unit of a mapped column under a heading of theirs. A heading at fault makes its values unusable.
+func (o *opened) unitOf(i int, text string, at cell.Ref) *headUnit {
+	m, h := o.src.mapped[i], &o.units[i]
+	if h.known && h.heading == text {
+		return h
+	}
+	*h = headUnit{known: true, heading: text, unit: m.unit, told: h.told}
+	c := m.to.column()
+	q := c.Quantity
+	if q == nil || m.words != nil && text == "" {
+		return h
+	}
+	if q.Plain() {
+		h.unit = &q.Units[0]
+		return h
+	}
+	u, inside := headingUnit(q, text)
+	row := m.line.Ref().String()
+	var e cell.Error
+	switch {
+	case u != nil && m.unit != nil && u != m.unit && !strings.Contains(m.unit.Name(), ":"):
+		e = headOther.problem(at, cell.Fault, "", text, u.Name(), row, m.unit.Name())
+	case u != nil && m.unit == nil:
+		h.unit = u
+		return h
+	case m.unit == nil && q == &unit.Temperature && (strings.EqualFold(inside, "K") || strings.EqualFold(inside, "kelvin")):
+		e = headKelvin.problem(at, cell.Fault, "", text)
+	case m.unit == nil && inside != "" && otherQuantity(q, inside):
+		e = headNotUnit.problem(at, cell.Fault, "", text, strconv.Quote(inside), q.Name, row)
+	default:
+		return h
+	}
+	h.fault = &e
+	o.refuse(e)
+	return h
+}
+
+// hiddenHeads warns of hidden columns, or rows of transposed sheets, whose values are used.
+func (o *opened) hiddenHeads() {
+	if len(o.grid.HiddenCols) == 0 && o.src.layout != columnLayout {
+		return
+	}
+	told := map[int]bool{}
+	for i, l := range o.lines {
+		if l == 0 || told[l] {
+			continue
+		}
+		told[l] = true
+		switch {
+		case o.src.layout == columnLayout:
+			if r := o.grid.Row(l); r != nil && r.Hidden {
+				o.im.problems.Add(headHidden.problem(o.ref(l, 0), cell.Warning, "", "", fmt.Sprintf("Row %d", l)))
+			}
+		case o.grid.HiddenCols[l]:
+			o.im.problems.Add(headHidden.problem(o.heads[i].at, cell.Warning, "", "", "Column "+cell.ColumnName(l)))
+		}
+	}
+}
+
+// labels finds the labels of forms.
+func (o *opened) labels() {
+	wanted := map[string][]int{}
+	for i, w := range o.src.wheres {
+		if w.kind == byName {
+			wanted[w.key] = append(wanted[w.key], i)
+		}
+	}
+	var known []string
+	exact := make([][]spotAt, len(o.src.wheres))
+	for r := range o.grid.Rows {
+		row := &o.grid.Rows[r]
+		for c := range row.Cells {
+			e := &row.Cells[c]
+			if e.Kind != workbook.Text || len(e.Text) > 250 {
+				continue
+			}
+			at := spotAt{row.N, int(e.Col)}
+			known = append(known, e.Text)
+			for _, i := range wanted[headingKey(e.Text)] {
+				exact[i] = append(exact[i], at)
+			}
+			if bare, in := workbook.SplitHeading(e.Text); in != "" {
+				for _, i := range wanted[headingKey(bare)] {
+					o.hits[i] = append(o.hits[i], at)
+				}
+			}
+		}
+	}
+	for i, w := range o.src.wheres {
+		if len(exact[i]) > 0 {
+			o.hits[i] = exact[i]
+		}
+		if w.kind == byName && len(o.hits[i]) == 0 {
+			if len(known) > 2000 {
+				known = known[:2000]
+			}
+			o.refuse(labelUnknown.problem(w.at, cell.Fault, "", w.text, o.label, workbook.Meant(w.text, known), example[o.src.layout]))
+		}
+	}
+	for i, m := range o.src.mapped {
+		if m.unit != nil && o.src.wheres[m.where].kind == byNumber {
+			o.unitOf(i, "", cell.Ref{})
+		}
+	}
+}
