@@ -325,7 +325,7 @@ var words = map[string]string{
 	"rounding":           "Limits are printed as typed and are never rounded; the unit as typed is the master, the other unit is its conversion. Results are rounded to the unfavourable side: times and temperatures that have to be reached down, those that may not be exceeded up, margins down. Temperatures read off a course are rounded down while heating and up otherwise.",
 	"known title":        "Cases with a known answer, solved by this very program",
 	"known none":         "No known-answer cases were run with this report. The command \"slowpoint verify\" runs them.",
-	"known note":         "The same program solved these cases in the same run. Each has an answer from a published source, or from a solution apart from this program.",
+	"known note":         "Each case has an answer from a published source, or from a solution apart from this program.",
 	"known problems":     "%d problems with a known answer",
 	"known problems one": "1 problem with a known answer",
 	"known all":          "The same program, version %s, solved %s in the same run. All are within their allowance; the largest deviation is %s %% of its allowance (%s).",
