@@ -2,6 +2,7 @@ package intake
 
 import (
 	"regexp"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -145,7 +146,6 @@ func understand(t *workbook.Tables) *Mapping {
 			m.copied[name] = lines
 		}
 	}
-	m.planItems()
 	return m
 }
 
@@ -544,7 +544,7 @@ func (m *Mapping) own(l *workbook.Line, heading string, c *workbook.Column, u *u
 	if e != nil {
 		e.Field = heading
 		if strings.HasPrefix(e.Msg, noUnit) {
-			e.Msg, e.Hint = fill(ownNoUnit.msg, []string{c.Heading}), fill(ownNoUnit.hint, []string{c.Quantity.Listing()})
+			e.Msg, e.Hint = fill(ownNoUnit.msg, []string{c.Heading}), fill(ownNoUnit.hint, []string{c.Heading, c.Quantity.Listing()})
 		}
 		return Value{}, e
 	}
@@ -685,6 +685,7 @@ func headingKey(s string) string {
 // arrange puts the rows of a source in the order of a plan's sheets, and tells which needed columns nobody fills.
 func (m *Mapping) arrange(s *source) {
 	var rows []*target
+	s.orderParts()
 	for _, sheet := range workbook.Sheets {
 		for _, t := range s.rows {
 			if t.sheet == sheet {
@@ -707,6 +708,30 @@ func (m *Mapping) arrange(s *source) {
 		for i, c := range t.sheet.Columns {
 			if c.Needed && t.slots[i] == nil && !s.standsIn(t, c) {
 				m.nobody(s, t, c)
+			}
+		}
+	}
+}
+
+// orderParts puts a part that only constants fill before the part that follows it in Constants: a rest of so many minutes that nobody
+// writes down stands between oven and chiller there. The others keep the order of Columns.
+func (s *source) orderParts() {
+	var named []*target // in the order of Constants
+	for _, c := range s.constants {
+		if !slices.Contains(named, c.to.row) {
+			named = append(named, c.to.row)
+		}
+	}
+	for i := len(named) - 1; i >= 0; i-- {
+		if named[i].mapped {
+			continue
+		}
+		for _, next := range named[i+1:] {
+			if next.sheet == named[i].sheet {
+				from := slices.Index(s.rows, named[i])
+				s.rows = slices.Delete(s.rows, from, from+1)
+				s.rows = slices.Insert(s.rows, slices.Index(s.rows, next), named[i])
+				break
 			}
 		}
 	}
@@ -753,20 +778,6 @@ func (s *source) products() *target {
 		}
 	}
 	return nil
-}
-
-// planItems tells of items of the sheet Plan that are there twice.
-func (m *Mapping) planItems() {
-	seen := map[string]int{}
-	for _, l := range m.copied["Plan"] {
-		name, _ := workbook.SplitHeading(text(l, "Item"))
-		k := workbook.Key(name)
-		if first := seen[k]; first > 0 {
-			m.blame(nil, l, "Item", text(l, "Item"), twice, strconv.Itoa(first))
-		} else if k != "" {
-			seen[k] = l.Ref().Row
-		}
-	}
 }
 
 // matches tells whether a name is that of a pattern with at most one *; "" is every name. Case and Unicode form make no difference.

@@ -62,6 +62,7 @@ var (
 
 	// their files and sheets
 	fileUnknown   = saying{"is the name of no file that was given", "files given: {1}"}
+	sheetOfCSV    = saying{"is a sheet, and a CSV file has none", "leave Sheet blank for CSV files"}
 	theirsUnknown = saying{"is the name of no visible sheet of {1}{2}", "its sheets are {3}"}
 	sheetNoFile   = saying{"No file that was given has a sheet for this source", "give the files, or correct File and Sheet"}
 	sheetHidden   = saying{"is a hidden sheet of {1} and is not read", "unhide it if it is to be imported"}
@@ -84,6 +85,7 @@ var (
 	formulasUsed  = saying{"The cell{1} a formula; the stored result is used", ""}
 	linksUsed     = saying{"The cell{1} a link to another workbook; the result that was stored last is used", "look whether it is up to date"}
 	protected     = saying{"The sheet is protected; it is read all the same", ""}
+	writing       = saying{"{1}", "look at its letters; save it as CSV UTF-8 if they are wrong"}
 	blocksBeside  = saying{"begins a second block in this row; the first begins in {1}", "blocks must stand below each other; name the places of each in a source of its own, or part them"}
 	noBlock       = saying{"begins no block of {1}", "correct Heading in the sheet Sources: the whole cell that starts each block"}
 

@@ -148,6 +148,8 @@ func (im *importer) find() {
 				given = append(given, f.Name)
 			}
 			im.problems.Add(fileUnknown.problem(s.line.At("File"), cell.Fault, "File", s.file, strings.Join(given, ", ")))
+		case file && s.sheet != "" && onlyCSV(names):
+			im.problems.Add(sheetOfCSV.problem(s.line.At("Sheet"), cell.Fault, "Sheet", s.sheet))
 		case file && s.sheet != "":
 			in := "the files given"
 			if s.file != "" {
@@ -159,6 +161,16 @@ func (im *importer) find() {
 		}
 	}
 	im.unread(read)
+}
+
+// onlyCSV tells whether sheets are those of CSV files only, which have no names.
+func onlyCSV(names []string) bool {
+	for _, n := range names {
+		if n != "" {
+			return false
+		}
+	}
+	return len(names) > 0
 }
 
 // unread tells of files and sheets that no source reads.
@@ -247,15 +259,15 @@ func (im *importer) record(o *opened, rec record, n *Count) {
 		return
 	}
 	from := len(im.r.Not)
+	for i := range im.filled {
+		im.filled[i] = false
+	}
+	for i := range im.some {
+		im.some[i] = false
+	}
 	if rec.hidden != "" {
 		im.refuse(o, rec, rec.at, nil, "", hiddenRow, rec.hidden)
 	} else {
-		for i := range im.filled {
-			im.filled[i] = false
-		}
-		for i := range im.some {
-			im.some[i] = false
-		}
 		im.whole(o, rec)
 		im.mapped(o, rec)
 		im.constants(o, rec)
@@ -373,7 +385,7 @@ func (im *importer) mapped(o *opened, rec record) {
 		}
 		at := Place{o.file, o.grid.Name, f.row, f.col}
 		c := m.to.column()
-		if !o.usable(im, rec, f, at, c) {
+		if !o.usable(im, rec, i, f, at, c) {
 			continue
 		}
 		if m.words != nil {
@@ -387,10 +399,16 @@ func (im *importer) mapped(o *opened, rec record) {
 }
 
 // usable tells whether a form's cell is none of the kinds that are never used, and tells of those.
-func (o *opened) usable(im *importer, rec record, f *found, at Place, c *workbook.Column) bool {
+func (o *opened) usable(im *importer, rec record, i int, f *found, at Place, c *workbook.Column) bool {
 	if f.e.Struck {
 		im.refuse(o, rec, at, c, o.grid.Shown(f.e), struckCell)
 		return false
+	}
+	switch {
+	case f.e.Linked:
+		o.count(1, o.src.mapped[i].where, o.ref(f.row, f.col), "", "")
+	case f.e.Formula && f.e.Kind != workbook.NoStored:
+		o.count(0, o.src.mapped[i].where, o.ref(f.row, f.col), "", "")
 	}
 	if f.row == 0 || o.src.layout == rowLayout || o.src.layout == columnLayout {
 		return true
@@ -422,9 +440,6 @@ func (im *importer) take(o *opened, rec record, i int, m *mapped, f *found, at P
 	if e != nil {
 		im.notTaken(o, rec, h, m, at, e)
 		return
-	}
-	if f.e.Formula {
-		o.count(0, m.where, place, "", "")
 	}
 	if o.shown != "" && f.e.Kind == workbook.Text && c.Quantity != nil && strings.ContainsAny(f.e.Text, ".,") && unit.Ambiguous(f.e.Text) {
 		o.count(2, m.where, place, f.e.Text, digits(t.Value.Computed)+" "+c.Quantity.Units[0].Name())
@@ -621,8 +636,7 @@ func (im *importer) told(rec record, c *workbook.Column, t *target) bool {
 
 // missing tells of a needed cell that is blank.
 func (im *importer) missing(o *opened, rec record, p *put1, c *workbook.Column) {
-	why, mend := c.Missing()
-	_ = why
+	_, mend := c.Missing()
 	switch {
 	case p != nil && p.mapped != nil:
 		f := &o.cells[p.mapped.where]
@@ -793,6 +807,23 @@ func (o *opened) tell() {
 	}
 }
 
+// listsUnread are the lists of sources of which some sheet could not be read.
+func (im *importer) listsUnread() map[*wordList]bool {
+	out := map[*wordList]bool{}
+	for i, s := range im.m.sources {
+		lost := s.fault != nil || len(im.opened[i]) == 0
+		for _, o := range im.opened[i] {
+			lost = lost || o.fault != nil
+		}
+		for _, m := range s.mapped {
+			if lost && m.words != nil {
+				out[m.words] = true
+			}
+		}
+	}
+	return out
+}
+
 // unusedWords warns of words that never occur and of lists that nobody uses.
 func (im *importer) unusedWords() {
 	for _, s := range im.m.sources {
@@ -802,6 +833,7 @@ func (im *importer) unusedWords() {
 			}
 		}
 	}
+	unread := im.listsUnread()
 	seen := map[*wordList]bool{}
 	for _, l := range im.m.t.Lines("Words") {
 		list := im.m.lists[workbook.Key(text(l, "List"))]
@@ -809,6 +841,9 @@ func (im *importer) unusedWords() {
 			continue
 		}
 		seen[list] = true
+		if unread[list] { // nobody knows which of its words occur
+			continue
+		}
 		if !list.used {
 			im.problems.Add(listNever.problem(list.line.At("List"), cell.Warning, "List", list.name))
 			continue

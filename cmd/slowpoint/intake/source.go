@@ -89,6 +89,12 @@ func (im *importer) open(src *source, file int, g *workbook.Grid) *opened {
 	}
 	o.file1 = workbook.Entry{Kind: workbook.Text, Text: im.files[file].Name}
 	o.sheet1 = workbook.Entry{Kind: workbook.Text, Text: g.Name}
+	if g.Protected {
+		im.problems.Add(protected.problem(cell.Ref{Sheet: o.label}, cell.Note, "", ""))
+	}
+	if g.Noted != "" {
+		im.problems.Add(writing.problem(cell.Ref{Sheet: o.label}, cell.Note, "", "", g.Noted))
+	}
 	if g.Refused != "" {
 		o.refuse(cell.Error{At: cell.Ref{Sheet: o.label}, Msg: g.Refused, Hint: g.Mend})
 		return o
@@ -158,6 +164,9 @@ func (o *opened) headLines() (last int) {
 // headings finds the line of every where that is named by its heading.
 func (o *opened) headings() {
 	src := o.src
+	if src.heads[0] == 0 { // the mapping is at fault, which was told
+		return
+	}
 	exact, loose := map[string][]int{}, map[string][]int{}
 	var known []string
 	texts := map[int]string{}

@@ -10,6 +10,9 @@ import (
 	"regexp"
 	"strings"
 	"unicode/utf8"
+
+	"golang.org/x/text/encoding/charmap"
+	"golang.org/x/text/encoding/unicode"
 )
 
 // Limits on size; generous, and stated in the messages.
@@ -63,7 +66,13 @@ func csvGrid(name string, data []byte) *Grid {
 		sheet = sheetOf(MadeSheets, g.Name)
 	}
 	best, score := ',', -1
+	if sheet == nil {
+		best = delimiter(data)
+	}
 	for _, d := range []rune{',', ';', '\t'} {
+		if sheet == nil {
+			break
+		}
 		if n := likeness(sheet, data, d); n > score {
 			best, score = d, n
 		}
@@ -92,11 +101,7 @@ func likeness(sheet *Sheet, data []byte, d rune) int {
 	rows, _ := csvRows(data, d, 40)
 	best, width := 0, 0
 	for i := range rows {
-		n := 0
-		if sheet != nil {
-			n = len(headings(sheet, &rows[i]))
-		}
-		if n > best {
+		if n := len(headings(sheet, &rows[i])); n > best {
 			best, width = n, len(rows[i].Cells)
 		}
 	}
@@ -107,6 +112,60 @@ func likeness(sheet *Sheet, data []byte, d rune) int {
 		}
 	}
 	return 1000*best + same
+}
+
+// delimiter finds what divides the cells of a file of which no heading is known, by its data: a sign that gives most lines the same
+// number of cells. A semicolon or a tab goes before a comma, which stands in numbers and in words as well.
+func delimiter(data []byte) rune {
+	signs := []rune{'\t', ';', ','}
+	var even [3]int
+	most := 0
+	for i, d := range signs {
+		even[i] = evenness(data, d)
+		most = max(most, even[i])
+	}
+	for i, d := range signs {
+		if even[i] > 0 && 10*even[i] >= 6*most {
+			return d
+		}
+	}
+	return ','
+}
+
+// evenness is how many of the first lines have the same number of cells, more than one, if a sign divides them.
+func evenness(data []byte, d rune) int {
+	r := csv.NewReader(bytes.NewReader(data))
+	r.Comma, r.FieldsPerRecord, r.ReuseRecord = d, -1, true
+	lines, best := map[int]int{}, 0 // by their number of cells
+	for range 200 {
+		rec, err := r.Read()
+		if err != nil {
+			break
+		}
+		if n := len(rec); n > 1 {
+			lines[n]++
+			best = max(best, lines[n])
+		}
+	}
+	return best
+}
+
+// foreignGrid reads a CSV file of somebody's own, in whatever writing it was saved: UTF-8, UTF-16 with a mark, else Windows-1252.
+func foreignGrid(data []byte) *Grid {
+	noted := ""
+	switch {
+	case bytes.HasPrefix(data, []byte("\xff\xfe")), bytes.HasPrefix(data, []byte("\xfe\xff")):
+		if out, err := unicode.UTF16(unicode.BigEndian, unicode.UseBOM).NewDecoder().Bytes(data); err == nil {
+			data, noted = out, "The file is in UTF-16 and is read as such"
+		}
+	case !utf8.Valid(data) && bytes.IndexByte(data, 0) < 0:
+		if out, err := charmap.Windows1252.NewDecoder().Bytes(data); err == nil {
+			data, noted = out, "The file is not in UTF-8 and has no mark of its writing; it is read as Windows-1252"
+		}
+	}
+	g := csvGrid("", data)
+	g.Noted = noted
+	return g
 }
 
 // csvRows reads at most most filled rows. Row numbers are those that a spreadsheet shows: a line break within quotes starts no row.

@@ -18,6 +18,8 @@ type Grid struct {
 	CSV        bool
 	commas     bool   // CSV whose cells are divided by commas
 	Is1904     bool   // its dates count from 1904
+	Protected  bool   // against changes, with or without a password
+	Noted      string // how a CSV file of somebody's own had to be read; a sentence, "" if it is plain UTF-8
 	Refused    string // why nothing in it can be used: goes into a fault of the whole sheet
 	Mend       string
 }
@@ -62,6 +64,7 @@ type Entry struct {
 	Kind    Kind
 	Form    Form
 	Formula bool
+	Linked  bool // the formula takes something from another workbook
 	Struck  bool // struck through, wholly or in part
 }
 

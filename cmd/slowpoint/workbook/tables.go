@@ -89,7 +89,7 @@ func ReadSpreadsheet(name string) (*Spreadsheet, error) {
 	}
 	s := &Spreadsheet{Name: filepath.Base(name), SHA256: digest}
 	if strings.EqualFold(filepath.Ext(name), ".csv") {
-		s.Sheets = []*Grid{csvGrid("", data)}
+		s.Sheets = []*Grid{foreignGrid(data)}
 		return s, nil
 	}
 	if s.Sheets, err = readWorkbook(data); err != nil {

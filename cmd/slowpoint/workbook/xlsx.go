@@ -493,6 +493,9 @@ func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
 			if g.Refused == "" {
 				row.Cells = append(row.Cells, c)
 			}
+		case "sheetProtection":
+			v := attr(e, "sheet")
+			g.Protected = v == "1" || v == "true"
 		case "mergeCell":
 			if m, ok := parseBlock(attr(e, "ref")); ok {
 				g.Merged = append(g.Merged, m)
@@ -584,6 +587,7 @@ func parseBlock(ref string) (Block, bool) {
 type stored struct {
 	kind, value, inline   string
 	formula, hasV, struck bool
+	linked                bool
 }
 
 // cell reads one cell up to its end.
@@ -598,8 +602,9 @@ func (b *book) cell(d *xml.Decoder, e xml.StartElement) (Entry, error) {
 		case xml.StartElement:
 			switch t.Name.Local {
 			case "f":
-				in.formula = true
-				err = d.Skip()
+				var f string
+				f, err = charData(d)
+				in.formula, in.linked = true, otherBook(f)
 			case "is":
 				in.inline, in.struck, err = richText(d)
 			case "v":
@@ -627,7 +632,7 @@ func (b *book) cell(d *xml.Decoder, e xml.StartElement) (Entry, error) {
 
 // meaning makes an entry of what a cell holds; style is the number of its cell style.
 func (b *book) meaning(in stored, style string) (Entry, error) {
-	c := Entry{Formula: in.formula, Struck: in.struck}
+	c := Entry{Formula: in.formula, Linked: in.linked, Struck: in.struck}
 	if b.struck.styles != nil {
 		n, err := strconv.Atoi(style)
 		c.Struck = c.Struck || err == nil && b.struck.styles[n]
@@ -667,6 +672,24 @@ func (b *book) meaning(in stored, style string) (Entry, error) {
 		c.Kind = Broken
 	}
 	return c, nil
+}
+
+// otherBook tells whether a formula takes something from another workbook, which it names by a number: [1]Sheet1!A1.
+func otherBook(formula string) bool {
+	for {
+		i := strings.IndexByte(formula, '[')
+		if i < 0 {
+			return false
+		}
+		formula = formula[i+1:]
+		j := 0
+		for j < len(formula) && formula[j] >= '0' && formula[j] <= '9' {
+			j++
+		}
+		if j > 0 && j < len(formula) && formula[j] == ']' {
+			return true
+		}
+	}
 }
 
 // charData reads the text of an element up to its end.
