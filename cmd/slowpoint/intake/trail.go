@@ -97,13 +97,17 @@ func (s spot) String() string {
 	return "map: " + s.mapping
 }
 
+// mostTried is how many variants a row is held against, the newest first: a file in which every record has places of its own must not
+// take the square of its length.
+const mostTried = 20
+
 // ofMade notes where the cells of a made row come from, and gives the words for its column #From, without the checksum.
 func (t *trail) ofMade(m *Made) string {
 	g := group{m.Record.File, m.Record.Sheet, m.Sheet.Name, m.Part}
 	file := t.r.file(m.Record)
 	var fits *variant
-	for _, v := range t.variants[g] {
-		if v.takes(m, file) {
+	for i, all := len(t.variants[g])-1, t.variants[g]; i >= max(0, len(all)-mostTried); i-- {
+		if v := all[i]; v.takes(m, file) {
 			fits = v
 			break
 		}

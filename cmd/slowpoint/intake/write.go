@@ -29,10 +29,7 @@ func Write(w io.Writer, r *Result) error {
 	if err != nil {
 		return err
 	}
-	b := &book{f: f, looks: looks, r: r, trail: newTrail(r), made: map[*workbook.Sheet][]*Made{}}
-	for i := range r.Made {
-		b.made[r.Made[i].Sheet] = append(b.made[r.Made[i].Sheet], &r.Made[i])
-	}
+	b := newBook(f, looks, r)
 	for _, s := range workbook.Sheets {
 		if err := b.sheet(s); err != nil {
 			return fmt.Errorf("sheet %s: %w", s.Name, err)
@@ -59,8 +56,30 @@ type book struct {
 	looks  *workbook.Looks
 	r      *Result
 	trail  *trail
+	copied map[*workbook.Sheet][]*workbook.Line // rows of the mapping that can be used; the others are in faulty
+	faulty []NotImported
 	made   map[*workbook.Sheet][]*Made
-	sheets int // made so far
+	lanes  map[*workbook.Sheet][]*lane
+	point  bool // the plan is to say that its decimal sign is the point
+	sheets int  // made so far
+}
+
+func newBook(f *excelize.File, looks *workbook.Looks, r *Result) *book {
+	b := &book{f: f, looks: looks, r: r, trail: newTrail(r), faulty: r.Faulty(), copied: map[*workbook.Sheet][]*workbook.Line{},
+		made: map[*workbook.Sheet][]*Made{}, lanes: map[*workbook.Sheet][]*lane{}}
+	for i := range r.Made {
+		b.made[r.Made[i].Sheet] = append(b.made[r.Made[i].Sheet], &r.Made[i])
+	}
+	for _, s := range workbook.Sheets {
+		for _, l := range r.Copied[s.Name] {
+			if l.Sound() { // Faulty has looked
+				b.copied[s] = append(b.copied[s], l)
+			}
+		}
+		b.lanes[s] = lanesOf(s, b.copied[s], b.made[s])
+	}
+	b.point = b.saysPoint()
+	return b
 }
 
 // add makes the next sheet.
@@ -78,6 +97,7 @@ type lane struct {
 	*workbook.Column
 	unit    *unit.Unit // of the heading; nil for words
 	longest int        // text of its cells, in characters
+	pointed bool       // a number with a point stands in it as text
 }
 
 // title is the heading with its unit.
@@ -98,15 +118,13 @@ type put struct {
 
 // sheet writes a sheet of the plan; one without a row is left out, except Products.
 func (b *book) sheet(s *workbook.Sheet) error {
-	copied := b.copied(s)
-	made := b.made[s]
-	if len(copied)+len(made) == 0 && s.Name != "Products" && !(s.Name == "Plan" && b.texts()) {
+	copied, made, lanes := b.copied[s], b.made[s], b.lanes[s]
+	if len(copied)+len(made) == 0 && s.Name != "Products" && !(s.Name == "Plan" && b.point) {
 		return nil
 	}
 	if err := b.add(s.Name); err != nil {
 		return err
 	}
-	lanes := lanesOf(s, copied, made)
 	wide, columns, heads := 0.0, make([]*workbook.Column, len(lanes)), make([]any, len(lanes)+1)
 	for i, c := range lanes {
 		columns[i], heads[i] = c.Column, excelize.Cell{StyleID: b.looks.Heading(c.Column), Value: c.title()}
@@ -161,7 +179,7 @@ func (p *page) cells(cells []any, options ...excelize.RowOpts) error {
 }
 
 func (p *page) rows(copied []*workbook.Line, made []*Made) error {
-	sign := p.sheet.Name == "Plan" && p.b.texts() // the decimal sign of made texts is to be said
+	sign := p.sheet.Name == "Plan" && p.b.point // the decimal sign of made texts is to be said
 	for _, l := range copied {
 		p.puts = p.puts[:0]
 		for i, c := range p.lanes {
@@ -331,34 +349,17 @@ func isDecimalSign(l *workbook.Line) bool {
 	return workbook.Key(name) == "decimal sign"
 }
 
-// texts tells whether the plan holds texts in columns of numbers, or says a decimal sign: then it must say that it is the point.
-func (b *book) texts() bool {
-	for i := range b.r.Made {
-		for k := range b.r.Made[i].Values {
-			if v := &b.r.Made[i].Values[k]; v.Column.Quantity != nil && strings.ContainsRune(v.Text, '.') {
+// saysPoint tells whether the plan must say that its decimal sign is the point: where it holds texts in columns of numbers, and where the
+// mapping says a sign.
+func (b *book) saysPoint() bool {
+	for _, s := range workbook.Sheets {
+		for _, c := range b.lanes[s] {
+			if c.pointed {
 				return true
 			}
 		}
 	}
-	for _, lines := range b.r.Copied {
-		for _, l := range lines {
-			if l.Sound() && l.Filled("Item") && isDecimalSign(l) {
-				return true
-			}
-		}
-	}
-	return false
-}
-
-// copied are the rows of the mapping for a sheet that can be used; the others are in Faulty.
-func (b *book) copied(s *workbook.Sheet) []*workbook.Line {
-	var out []*workbook.Line
-	for _, l := range b.r.Copied[s.Name] {
-		if sound(s, l) {
-			out = append(out, l)
-		}
-	}
-	return out
+	return slices.ContainsFunc(b.copied[workbook.SheetNamed("Plan")], isDecimalSign)
 }
 
 // sound reads every number of a row of the mapping, and tells whether all of the row can be copied.
@@ -396,7 +397,7 @@ func (r *Result) Faulty() []NotImported {
 // heading takes the unit of the first filled cell.
 func lanesOf(s *workbook.Sheet, copied []*workbook.Line, made []*Made) []*lane {
 	of := map[*workbook.Column]*lane{}
-	fill := func(c *workbook.Column, u *unit.Unit, text string) {
+	fill := func(c *workbook.Column, u *unit.Unit, text string) *lane {
 		t := of[c]
 		if t == nil {
 			t = &lane{Column: c}
@@ -406,18 +407,22 @@ func lanesOf(s *workbook.Sheet, copied []*workbook.Line, made []*Made) []*lane {
 			t.unit = u
 		}
 		t.longest = max(t.longest, utf8.RuneCountInString(text))
+		return t
 	}
 	for _, l := range copied {
 		for _, c := range s.Columns {
 			if l.Filled(c.Heading) {
-				fill(c, l.Unit(c.Heading), l.Entry(c.Heading).Text)
+				t, e := fill(c, l.Unit(c.Heading), l.Entry(c.Heading).Text), l.Entry(c.Heading)
+				t.pointed = t.pointed || c.Quantity != nil && e.Kind == workbook.Text && strings.ContainsAny(e.Text, ".,")
 			}
 		}
 	}
 	for _, m := range made {
 		for i := range m.Values {
 			if v := &m.Values[i]; v.Text != "" {
-				fill(v.Column, unitOf(v), v.Text)
+				u := unitOf(v)
+				t := fill(v.Column, u, v.Text)
+				t.pointed = t.pointed || v.Column.Quantity != nil && strings.ContainsRune(v.Text, '.') && (!v.Number || u != nil && u != t.unit)
 			}
 		}
 	}
@@ -448,7 +453,7 @@ type list struct {
 func (b *book) lists() []list {
 	r := b.r
 	rows := map[string][][]string{"Origins": b.trail.rows()}
-	for _, n := range append(slices.Clone(r.Not), r.Faulty()...) {
+	for _, n := range append(slices.Clone(r.Not), b.faulty...) {
 		at := n.At
 		if at.Row == 0 && at.Col == 0 {
 			at = n.Record
@@ -471,7 +476,7 @@ func (b *book) lists() []list {
 }
 
 // wide is the width of the columns of such a sheet, in characters.
-var wide = map[string]float64{"File": 30, "SHA-256": 20, "Their sheet": 24, "Sheet": 16, "Place": 14, "Part": 16, "Column": 26, "Record": 30, "Typed": 24,
+var wide = map[string]float64{"File": 30, "SHA-256": 66, "Their sheet": 24, "Sheet": 16, "Place": 14, "Part": 16, "Column": 26, "Record": 30, "Typed": 24,
 	"Why": 60, "How to mend": 60, "Reason": 60, "Product": 30, "What": 40, "Before": 30, "Now": 30, "Cell": 44, workbook.FromHeading: widthFrom}
 
 // list writes such a sheet.
@@ -510,7 +515,7 @@ func (b *book) list(t list) error {
 	}
 	err = errors.Join(put(1, []string{t.Help}, b.looks.Help), put(workbook.HeadRow, heads, b.looks.May))
 	for i := 0; err == nil && i < len(t.rows); i++ {
-		err = put(workbook.FirstRow+i, t.rows[i], b.looks.Text)
+		err = put(workbook.FirstRow+i, t.rows[i], b.looks.Wrapped)
 	}
 	if err != nil {
 		return err
@@ -546,6 +551,14 @@ func (r *Result) Where(p Place) string {
 		return s + "!" + p.short()
 	}
 	return s + " " + p.short()
+}
+
+// Ref is a place of their files as problems tell it; of the mapping, by the sheet alone.
+func (r *Result) Ref(p Place) cell.Ref {
+	if p.File < 0 {
+		return cell.Ref{Sheet: p.Sheet, Row: p.Row, Col: p.Col}
+	}
+	return cell.Ref{Sheet: r.sheetOf(p), Row: p.Row, Col: p.Col}
 }
 
 func (r *Result) sheetOf(p Place) string {

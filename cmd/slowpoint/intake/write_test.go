@@ -9,6 +9,7 @@ import (
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
+	"github.com/xuri/excelize/v2"
 	"pgregory.net/rapid"
 
 	"slowpoint/cmd/slowpoint/workbook"
@@ -370,4 +371,36 @@ func writeInto(t *rapid.T, folder, name string, r *Result) string {
 		t.Fatal(err)
 	}
 	return name
+}
+
+// TestEditedRow holds that a row which was edited after the import says so, and that its neighbour does not.
+func TestEditedRow(t *testing.T) {
+	name := written(t, lasagne())
+	f, err := excelize.OpenFile(name)
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	if err := f.SetCellFloat("Products", "D3", 46, -1, 64); err != nil {
+		t.Fatal(err)
+	}
+	if err := f.Save(); err != nil {
+		t.Fatal(err)
+	}
+	p, err := workbook.Read(name)
+	if err != nil {
+		t.Fatal(err)
+	}
+	from := map[string]string{}
+	for i := range p.Products {
+		for _, r := range p.Products[i].Readings() {
+			if r.Column == "Thickness" {
+				from[p.Products[i].Name] = r.From
+			}
+		}
+	}
+	want := map[string]string{"Lasagne": "edited after import; was Recipes.xlsx › Cook-chill!F17", "Mash": "Recipes.xlsx › Cook-chill!F18"}
+	if d := cmp.Diff(want, from); d != "" {
+		t.Error(d)
+	}
 }

@@ -22,6 +22,7 @@ type Looks struct {
 
 	Help, Needed, May    int // styles of the help line and of headings
 	Words, Text, Number  int // of cells; Text keeps 2-10 and 1.10 as they were typed
+	Wrapped              int // of text that takes several lines
 	Clock, Date, Percent int // of numbers that these formats give their meaning
 	Origin               int // of where a row comes from
 }
@@ -32,7 +33,7 @@ func NewLooks(f *excelize.File) (*Looks, error) {
 	if err != nil {
 		return nil, err
 	}
-	l := &Looks{k: k, Help: k.help, Needed: k.needed, May: k.may}
+	l := &Looks{k: k, Help: k.help, Needed: k.needed, May: k.may, Wrapped: k.verbatim}
 	number := func(format int) *excelize.Style {
 		s := blankLook{ink: "000000", ruled: true}.style(true)
 		s.NumFmt = format
