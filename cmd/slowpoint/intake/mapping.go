@@ -699,7 +699,7 @@ func (m *Mapping) arrange(s *source) {
 	if s.fault != nil || m.lost {
 		return
 	}
-	if len(s.rows) == 0 {
+	if len(s.mapped) == 0 {
 		e := m.tell(s.line.At("Source"), "Source", s.name, nothingMapped)
 		s.suffer(e)
 		return

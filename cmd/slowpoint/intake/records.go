@@ -2,6 +2,7 @@ package intake
 
 import (
 	"fmt"
+	"strconv"
 	"strings"
 
 	"slowpoint/cmd/slowpoint/workbook"
@@ -442,7 +443,7 @@ func (im *importer) take(o *opened, rec record, i int, m *mapped, f *found, at P
 		return
 	}
 	if o.shown != "" && f.e.Kind == workbook.Text && c.Quantity != nil && strings.ContainsAny(f.e.Text, ".,") && unit.Ambiguous(f.e.Text) {
-		o.count(2, m.where, place, f.e.Text, digits(t.Value.Computed)+" "+c.Quantity.Units[0].Name())
+		o.count(2, m.where, place, f.e.Text, strconv.FormatFloat(t.Value.Computed, 'g', 7, 64)+" "+c.Quantity.Units[0].Name())
 	}
 	v := Value{Column: c, At: at}
 	v.set(f.e, t, h.unit, o.decimal, false)
@@ -756,7 +757,7 @@ func differs(a, b []Value) *workbook.Column {
 			return b[i].Column
 		case i >= len(b):
 			return a[i].Column
-		case a[i].Column != b[i].Column, a[i].Text != b[i].Text, a[i].Unit != b[i].Unit:
+		case a[i].Column != b[i].Column, a[i].Unit != b[i].Unit, a[i].Text != b[i].Text && workbook.Key(a[i].Text) != workbook.Key(b[i].Text):
 			return b[i].Column
 		}
 	}
