@@ -42,6 +42,7 @@ type Column struct {
 	Possible *span          // outside it a number is refused; nil: whatever Least allows
 	Slip     string         // what such a number most likely is, as a question
 	Choices  []string       // accepted words, for a drop-down list; nil: any words or a number
+	Also     []string       // further words that are accepted and not offered
 	Free     bool           // Choices are suggestions: other words are accepted too
 	Help     string         // what to type, for the cell note and the manual
 }
@@ -141,6 +142,17 @@ var (
 	yesNo        = []string{"yes", "no"}
 )
 
+// stagesAlso are the other words for stages.
+func stagesAlso() []string {
+	var out []string
+	for _, s := range model.Stages {
+		if s.Also != "" {
+			out = append(out, s.Also)
+		}
+	}
+	return out
+}
+
 // publishedFilms is what the message about a missing film coefficient and the note of the column say, the low end of each first.
 const publishedFilms = "Published totals, low end first. Cold room, still air: 7.5 to 11.8 W/m²·K (Churchill-Chu cylinder 50–180 mm plus radiation 4.6–5.6). " +
 	"Air blown at 0.3 to 5 m/s over a 110 mm joint: 5.6 to 26.7 without radiation (Churchill and Bernstein 1977, J Heat Transfer 99:300). " +
@@ -232,7 +244,7 @@ var Sheets = []*Sheet{
 		{Heading: "Process", Needed: true, Help: "the name that Products gives"},
 		{Heading: "Product", Help: "only for a row that replaces the process's row of that Step for one product"},
 		{Heading: "Step", Needed: true, Help: "a name of its own within the process"},
-		{Heading: "Stage", Needed: true, Choices: stageNames, Help: "what the step is for; limits name stages"},
+		{Heading: "Stage", Needed: true, Choices: stageNames, Also: stagesAlso(), Help: "what the step is for; limits name stages"},
 		{Heading: "Duration", Quantity: &unit.Duration, Unit: "min", Usual: usualDuration, Possible: possibleDuration, Slip: slipTime, Needed: true, Least: Positive, Help: "the longest that the step may last"},
 		{Heading: "Until slowest point reaches", Quantity: &unit.Temperature, Unit: "°C", Help: "the step ends when the coldest place (cook, reheat, thaw, hold hot) or the hottest place (other stages) reaches this, at the latest after Duration"},
 	}, surroundings(), []*Column{

@@ -146,9 +146,11 @@ func (c *Column) words(e *Entry, g *Grid) (string, *refusal) {
 
 // choice reads a cell as one of the words of its column, as it stands in the list.
 func (c *Column) choice(e *Entry) (string, *refusal) {
-	for _, w := range c.Choices {
-		if Key(w) == Key(e.Text) {
-			return w, nil
+	for _, list := range [][]string{c.Choices, c.Also} {
+		for _, w := range list {
+			if Key(w) == Key(e.Text) {
+				return w, nil
+			}
 		}
 	}
 	return "", refused(e.Text, notAChoice, c.Heading, meant(e.Text, c.Choices), strings.Join(c.Choices, ", "))
