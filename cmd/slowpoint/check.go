@@ -218,12 +218,17 @@ func sameName(a, b string) bool {
 	return strings.EqualFold(strings.Join(strings.Fields(a), " "), strings.Join(strings.Fields(b), " "))
 }
 
-// progress is a bar on a terminal and nothing elsewhere.
+// progress is a bar on a terminal and nothing elsewhere, nor for a few products.
 func progress(errs io.Writer, n int) *progressbar.ProgressBar {
+	return progressOf(errs, n, "calculating", n > 3)
+}
+
+// progressOf is a bar of n parts, if it is wanted and errs is a terminal.
+func progressOf(errs io.Writer, n int, what string, wanted bool) *progressbar.ProgressBar {
 	f, ok := errs.(*os.File)
-	shown := ok && n > 3 && term.IsTerminal(int(f.Fd()))
+	shown := wanted && ok && term.IsTerminal(int(f.Fd()))
 	return progressbar.NewOptions(n, progressbar.OptionSetWriter(errs), progressbar.OptionSetVisibility(shown),
-		progressbar.OptionSetDescription("calculating"), progressbar.OptionShowCount(), progressbar.OptionClearOnFinish(),
+		progressbar.OptionSetDescription(what), progressbar.OptionShowCount(), progressbar.OptionClearOnFinish(),
 		progressbar.OptionUseANSICodes(os.Getenv("NO_COLOR") == ""))
 }
 

@@ -13,8 +13,11 @@ import (
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
+	"github.com/rogpeppe/go-internal/txtar"
 	"github.com/spf13/cobra"
+	"github.com/xuri/excelize/v2"
 
+	"slowpoint/cmd/slowpoint/intake"
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
 	"slowpoint/model/verify"
@@ -49,7 +52,7 @@ var made = []struct {
 	make func() string
 }{
 	{"commands", commandTable}, {"sheets", sheetTables}, {"shapes", shapeTable}, {"surroundings", surroundingsTable},
-	{"stages", stageTable}, {"rules", ruleTable}, {"refused", refusedList}, {"known answers", knownTable},
+	{"stages", stageTable}, {"rules", ruleTable}, {"refused", refusedList}, {"known answers", knownTable}, {"mapping", mappingTable},
 }
 
 // TestReadmeTables holds the tables of README.md equal to the lists that the program works with.
@@ -161,6 +164,21 @@ func sheetTables() string {
 		b.WriteString(table("Column|Needed|Takes|What it says", rows))
 	}
 	return b.String() + "\n"
+}
+
+// mappingTable lists the sheets of a mapping that are no sheets of a plan.
+func mappingTable() string {
+	var rows [][]string
+	for _, s := range intake.OwnSheets {
+		for i, c := range s.Columns {
+			name := ""
+			if i == 0 {
+				name = "**" + s.Name + "**: " + s.Help
+			}
+			rows = append(rows, []string{name, c.Title(), yes(c.Needed), c.Help})
+		}
+	}
+	return table("Sheet|Column|Needed|What it says", rows)
 }
 
 func yes(b bool) string {
@@ -294,6 +312,9 @@ func TestReadmeExamples(t *testing.T) {
 	text := project(t, "README.md")
 	ci := project(t, ".ci/test")
 	t.Chdir(t.TempDir())
+	if err := os.CopyFS(".", os.DirFS(top+"examples/own-list")); err != nil { // that the reader is asked to copy
+		t.Fatal(err)
+	}
 	ran := 0
 	for _, b := range blocks(text) {
 		if name, ok := strings.CutPrefix(b.head, "csv "); ok {
@@ -386,7 +407,7 @@ func TestLike(t *testing.T) {
 
 // TestHelpExamples runs the examples of every --help.
 func TestHelpExamples(t *testing.T) {
-	t.Chdir(t.TempDir())
+	confirmed := ownList(t)
 	for _, name := range []string{"plan.xlsx", "my-plan.xlsx"} {
 		if code := run([]string{"blank", "--demo", name}, nil, &bytes.Buffer{}, os.Stderr); code != 0 {
 			t.Fatalf("blank: exit code %d", code)
@@ -399,6 +420,9 @@ func TestHelpExamples(t *testing.T) {
 		for _, line := range strings.Split(c.Example, "\n") {
 			t.Run(strings.TrimSpace(line), func(t *testing.T) {
 				words := strings.Fields(line)
+				if i := slices.Index(words, "--map"); i > 0 { // the proposed one, after the user confirmed it
+					words[i+1] = confirmed
+				}
 				if words[1] == "blank" { // it never writes over an existing file
 					os.Remove(words[len(words)-1])
 				}
@@ -413,6 +437,40 @@ func TestHelpExamples(t *testing.T) {
 			t.Errorf("%s --help: exit code %d, or its example is missing:\n%s", c.CommandPath(), code, &out)
 		}
 	}
+}
+
+// ownList goes to an empty folder with the list and the mapping of the script import: Recipes.xlsx, and the folder that it names.
+func ownList(t *testing.T) (mapping string) {
+	t.Helper()
+	a, err := txtar.ParseFile("testdata/script/import.txtar")
+	if err != nil {
+		t.Fatal(err)
+	}
+	t.Chdir(t.TempDir())
+	if err := os.Mkdir("map", 0o755); err != nil {
+		t.Fatal(err)
+	}
+	f := excelize.NewFile()
+	defer f.Close()
+	for _, file := range a.Files {
+		switch {
+		case strings.HasPrefix(file.Name, "map/"):
+			if err := os.WriteFile(file.Name, file.Data, 0o644); err != nil {
+				t.Fatal(err)
+			}
+		case file.Name == "list.csv":
+			for i, line := range strings.Split(strings.TrimSpace(string(file.Data)), "\n") {
+				row := strings.Split(line, ",")
+				if err := f.SetSheetRow("Sheet1", fmt.Sprint("A", i+1), &row); err != nil {
+					t.Fatal(err)
+				}
+			}
+		}
+	}
+	if err := f.SaveAs("Recipes.xlsx"); err != nil {
+		t.Fatal(err)
+	}
+	return "map"
 }
 
 // TestReadmeResults holds the table of results.json in README.md to the keys that the demo's results have.

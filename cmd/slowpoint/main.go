@@ -122,6 +122,6 @@ It supports planning; it does not replace measurement. Your food authority decid
 		SilenceUsage: true, SilenceErrors: true,
 		CompletionOptions: cobra.CompletionOptions{HiddenDefaultCmd: true},
 	}
-	root.AddCommand(checkCommand(files), readCommand(), blankCommand(files), codesCommand(files), foodsCommand(), verifyCommand(), versionCommand())
+	root.AddCommand(checkCommand(files), readCommand(), importCommand(files), blankCommand(files), codesCommand(files), foodsCommand(), verifyCommand(), versionCommand())
 	return root
 }

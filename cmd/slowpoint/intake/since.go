@@ -8,7 +8,6 @@ import (
 	"strings"
 
 	"slowpoint/cmd/slowpoint/workbook"
-	"slowpoint/model/cell"
 	"slowpoint/model/unit"
 )
 
@@ -55,16 +54,87 @@ type held struct {
 	shown string  // as it stood, with its unit
 	si    float64 // in the unit that the program computes in
 	ok    bool    // si is known; otherwise the words are compared
-	at    string
 }
 
 // item is a row as it is compared.
 type item struct {
-	owner, what string // "Lasagne"; "chill, top"
-	first       string // its first column, by key
-	key         string // all its names
-	values      map[*workbook.Column]held
-	at          string
+	owner, what string         // "Lasagne"; "chill, top"
+	first       string         // its first column, by key
+	key         string         // all its names
+	line        *workbook.Line // it was read, or stands in the mapping
+	made        *Made          // or it was made
+	sign        unit.Decimal   // of line
+	r           *Result        // of made, and of line if that stands in the mapping
+}
+
+// value is a value of the row; false if the cell is blank.
+func (it *item) value(c *workbook.Column) (held, bool) {
+	if it.made != nil {
+		v := it.made.value(c)
+		if v == nil {
+			return held{}, false
+		}
+		return v.held(), true
+	}
+	l := it.line
+	if !l.Filled(c.Heading) {
+		return held{}, false
+	}
+	e := l.Entry(c.Heading)
+	if c.Quantity == nil {
+		if e.Form == workbook.Date {
+			return held{shown: l.Words(c.Heading)}, true
+		}
+		return held{shown: e.Text}, true
+	}
+	if v := l.Look(c.Heading); v != nil {
+		return held{v.Typed, v.Computed, true}, true
+	}
+	if v, m := c.Quantity.Parse(e.Text, l.Unit(c.Heading), it.sign); m == nil {
+		return held{v.Typed, v.Computed, true}, true
+	}
+	return held{shown: e.Text}, true
+}
+
+// words are those of a column; "" if it is blank.
+func (it *item) words(c *workbook.Column) string {
+	if it.made == nil {
+		return it.line.Entry(c.Heading).Text
+	}
+	if v := it.made.value(c); v != nil {
+		return v.Text
+	}
+	return ""
+}
+
+// at is where a value comes from, or the row if it is blank.
+func (it *item) at(c *workbook.Column) string {
+	if it.made == nil {
+		ref := it.line.Ref()
+		if c != nil && it.line.Filled(c.Heading) {
+			ref = it.line.At(c.Heading)
+		}
+		return it.r.Where(Place{File: -1, Sheet: ref.Sheet, Row: ref.Row, Col: ref.Col})
+	}
+	if v := it.made.value(c); v != nil {
+		switch {
+		case v.At.Row > 0 && v.At.Col > 0:
+			return it.r.Where(v.At)
+		case v.Const != "":
+			return it.r.Mapping + " › " + v.Const
+		}
+	}
+	return it.r.Where(it.made.Record)
+}
+
+// value finds the filled value of a column; nil if there is none.
+func (m *Made) value(c *workbook.Column) *Value {
+	for i := range m.Values {
+		if v := &m.Values[i]; v.Column == c && v.Text != "" {
+			return v
+		}
+	}
+	return nil
 }
 
 // stock is a plan as it is compared: its rows by sheet, in order and by their names.
@@ -78,15 +148,14 @@ func newStock() *stock {
 	return &stock{inOrder: map[*workbook.Sheet][]*item{}, by: map[string]*item{}, count: map[string]int{}}
 }
 
-func (s *stock) add(sheet *workbook.Sheet, values map[*workbook.Column]held, at string) {
-	it := &item{values: values, at: at}
+func (s *stock) add(sheet *workbook.Sheet, it *item) {
 	named, whole := keys[sheet.Name], []string{sheet.Name}
 	if named == nil {
 		named = []string{sheet.Columns[0].Heading}
 	}
 	var what []string
 	for i, h := range named {
-		v := values[sheet.Column(h)].shown
+		v := it.words(sheet.Column(h))
 		whole = append(whole, workbook.Key(v))
 		switch {
 		case i == 0:
@@ -132,89 +201,49 @@ func stockOf(t *workbook.Tables) *stock {
 	}
 	for _, sheet := range workbook.Sheets {
 		for _, l := range t.Lines(sheet.Name) {
-			s.line(sheet, l, sign, cell.Ref.String)
+			s.line(sheet, l, sign, nil)
 		}
 	}
 	return s
 }
 
-// line adds a row that was read; where tells its places.
-func (s *stock) line(sheet *workbook.Sheet, l *workbook.Line, sign unit.Decimal, where func(cell.Ref) string) {
-	if sheet.Name == "Plan" && isDecimalSign(l) {
-		return // how the others are written
+// line adds a row that was read; how numbers are written is not a row of the sheet Plan.
+func (s *stock) line(sheet *workbook.Sheet, l *workbook.Line, sign unit.Decimal, r *Result) {
+	if sheet.Name != "Plan" || !isDecimalSign(l) {
+		s.add(sheet, &item{line: l, sign: sign, r: r})
 	}
-	values := map[*workbook.Column]held{}
-	for _, c := range sheet.Columns {
-		if !l.Filled(c.Heading) {
-			continue
-		}
-		e := l.Entry(c.Heading)
-		h := held{shown: e.Text, at: where(l.At(c.Heading))}
-		switch {
-		case c.Quantity == nil:
-			if e.Form == workbook.Date {
-				h.shown = l.Words(c.Heading)
-			}
-		case l.Value(c.Heading) != nil:
-			v := l.Value(c.Heading)
-			h.shown, h.si, h.ok = v.Typed, v.Computed, true
-		default:
-			if v, m := c.Quantity.Parse(e.Text, l.Unit(c.Heading), sign); m == nil {
-				h.shown, h.si, h.ok = v.Typed, v.Computed, true
-			}
-		}
-		values[c] = h
-	}
-	s.add(sheet, values, where(l.Ref()))
 }
 
 // stock is the result as it is compared, in the order in which it is written.
 func (r *Result) stock() *stock {
 	s := newStock()
-	theirs := func(at cell.Ref) string {
-		return r.Where(Place{File: -1, Sheet: at.Sheet, Row: at.Row, Col: at.Col})
-	}
 	for _, sheet := range workbook.Sheets {
 		for _, l := range r.Copied[sheet.Name] {
 			if sound(sheet, l) {
-				s.line(sheet, l, unit.Unsure, theirs)
+				s.line(sheet, l, unit.Unsure, r)
 			}
 		}
 	}
 	for i := range r.Made {
-		m := &r.Made[i]
-		values := map[*workbook.Column]held{}
-		for k := range m.Values {
-			if v := &m.Values[k]; v.Text != "" {
-				values[v.Column] = r.held(v)
-			}
-		}
-		s.add(m.Sheet, values, r.Where(m.Record))
+		s.add(r.Made[i].Sheet, &item{made: &r.Made[i], r: r})
 	}
 	return s
 }
 
 // held is a made value as it is compared.
-func (r *Result) held(v *Value) held {
-	h := held{shown: v.Text}
-	switch {
-	case v.At.Row > 0 && v.At.Col > 0:
-		h.at = r.Where(v.At)
-	case v.Const != "":
-		h.at = r.Mapping + " › " + v.Const
-	}
+func (v *Value) held() held {
 	q := v.Column.Quantity
 	if q == nil {
-		return h
+		return held{shown: v.Text}
 	}
 	u := unitOf(v)
 	if u == nil && q.Plain() {
 		u = &q.Units[0]
 	}
 	if x, m := q.Parse(v.Text, u, unit.Point); m == nil {
-		h.shown, h.si, h.ok = x.Typed, x.Computed, true
+		return held{x.Typed, x.Computed, true}
 	}
-	return h
+	return held{shown: v.Text}
 }
 
 // same tells whether two values mean the same.
@@ -259,9 +288,7 @@ func compare(old, now *stock) []Change {
 			if s.Name == "Products" {
 				lost[it.first] = true
 			}
-			gone := *it
-			gone.at = ""
-			out = append(out, only(s, &gone, "gone", after, told, lost)...)
+			out = append(out, only(s, it, "gone", after, told, lost)...)
 		}
 		if s.Name == "Steps" {
 			out = append(out, reordered(old, now, s)...)
@@ -285,21 +312,27 @@ func only(s *workbook.Sheet, it *item, word string, other, told, products map[st
 	switch {
 	case s.Name != "Products" && products[it.first] && nouns[s.Name] != "food ":
 		return nil
-	case other[it.first]:
-		return []Change{{Product: it.owner, What: strings.TrimSpace(parts[s.Name] + it.what + " " + word), Cell: it.at}}
 	case told[it.first]:
 		return nil
 	}
-	told[it.first] = true
-	return []Change{{Product: it.owner, What: word, Cell: it.at}}
+	c := Change{Product: it.owner, What: word}
+	if other[it.first] {
+		c.What = strings.TrimSpace(parts[s.Name] + it.what + " " + word)
+	} else {
+		told[it.first] = true
+	}
+	if it.r != nil {
+		c.Cell = it.at(nil)
+	}
+	return []Change{c}
 }
 
 // changes lists the values that differ between two rows of the same names.
 func changes(s *workbook.Sheet, old, now *item) []Change {
 	var out []Change
 	for _, c := range s.Columns {
-		a, was := old.values[c]
-		b, is := now.values[c]
+		a, was := old.value(c)
+		b, is := now.value(c)
 		if slices.Contains(keys[s.Name], c.Heading) || was == is && (!was || same(c, a, b)) {
 			continue
 		}
@@ -307,11 +340,7 @@ func changes(s *workbook.Sheet, old, now *item) []Change {
 		if now.what != "" {
 			what = now.what + ": " + what
 		}
-		at := b.at
-		if at == "" {
-			at = now.at
-		}
-		out = append(out, Change{Product: now.owner, What: what, Before: a.shown, Now: b.shown, Cell: at})
+		out = append(out, Change{Product: now.owner, What: what, Before: a.shown, Now: b.shown, Cell: now.at(c)})
 	}
 	return out
 }
@@ -337,7 +366,7 @@ func reordered(old, now *stock, s *workbook.Sheet) []Change {
 	var out []Change
 	for _, p := range first {
 		if !slices.EqualFunc(before[p], after[p], func(a, b string) bool { return workbook.Key(a) == workbook.Key(b) }) {
-			out = append(out, Change{Product: at[p].owner, What: "order of steps", Before: strings.Join(before[p], "; "), Now: strings.Join(after[p], "; "), Cell: at[p].at})
+			out = append(out, Change{Product: at[p].owner, What: "order of steps", Before: strings.Join(before[p], "; "), Now: strings.Join(after[p], "; "), Cell: at[p].at(nil)})
 		}
 	}
 	return out

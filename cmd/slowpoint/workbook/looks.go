@@ -114,3 +114,18 @@ func (l *Line) Unit(heading string) *unit.Unit {
 
 // Because are the faults that keep the row from being used.
 func (l *Line) Because() cell.Errors { return l.because }
+
+// Look is Value for whoever only compares: nothing is told and nothing goes into the input echo.
+func (l *Line) Look(heading string) *unit.Value {
+	problems, because, readings := len(l.r.problems), l.because, l.readings
+	echoed := 0
+	if readings != nil {
+		echoed = len(readings[0].list)
+	}
+	v := l.Value(heading)
+	l.r.problems, l.because, l.readings = l.r.problems[:problems], because, readings
+	if readings != nil {
+		readings[0].list = readings[0].list[:echoed]
+	}
+	return v
+}
