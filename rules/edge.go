@@ -11,15 +11,16 @@ import (
 // an edge. A place just within that edge was there for a moment only and starts its clock at its peak, before its neighbours
 // on the warmer side fall to the crossing. So the time taken grows towards the edge, with an infinite slope, and its supremum over the
 // places that count is the limit at the edge. That supremum decides: verdict and margin are those of a place whose peak is edgeK
-// above the crossing, as near to the limit as the numbers go. The place named, and its value, are a probe's breadth within the edge
+// above the crossing, as near to the limit as the numbers go. The place named, and its value, are half a probe's breadth within the edge
 // where the verdict is the same there: nobody can measure nearer, and the note tells the value at the edge.
 
 // edgeK is how far the peak of a place at an edge lies above the crossing, within half as much, K: what the search for a peak can
 // tell apart. For a chill of an hour it shortens the time by about a second.
 const edgeK = 1e-5
 
-// probeM is how near to an edge two places cannot be told apart: no probe is thinner, m (common practice, no source).
-const probeM = 4e-4
+// probeM is how near to an edge two places cannot be told apart: half the breadth of the thinnest needles of probes, m (common practice,
+// no source).
+const probeM = 6e-4
 
 // onEdge is a place on an edge, and which way the counting places lie on one of its axes: 1 or -1.
 type onEdge struct {
@@ -33,7 +34,7 @@ func (e *edge) on(x coordinates) onEdge {
 	return onEdge{x, e.axis, math.Copysign(1, e.in[e.axis]-e.out[e.axis])}
 }
 
-// probed is the place a probe's breadth within an edge, unless a verdict is another one there.
+// probed is the place half a probe's breadth within an edge, unless a verdict is another one there.
 func (v *view) probed(edge candidate, q question) (candidate, bool) {
 	x := edge.edge.at
 	x[edge.edge.axis] = v.c.inside(edge.edge.axis, x[edge.edge.axis]+edge.edge.inward*probeM)
@@ -44,7 +45,7 @@ func (v *view) probed(edge candidate, q question) (candidate, bool) {
 	return c, c.nominal.verdict == edge.nominal.verdict && q.measure(c.path, t).verdict == q.measure(edge.path, t).verdict
 }
 
-// edgeNote tells that a finding's place lies at an edge, or a probe's breadth within it.
+// edgeNote tells that a finding's place lies at an edge, or half a probe's breadth within it.
 func (v *view) edgeNote(edge candidate, q question, there bool) string {
 	h := holes{"start": v.l.startWords()}
 	if there || math.IsNaN(edge.nominal.value) {

@@ -106,7 +106,7 @@ var words = map[string]string{
 
 	"note again":        "Rose above {temp} again at {when}; the clock does not start anew.",
 	"note at the edge":  "The place lies at the edge of those that ever were above {start}: it only just was, and for a place beyond it no clock started.",
-	"note edge":         "The place lies a probe's breadth (0.4 mm) within the edge of those that ever were above {start}; at the edge itself, where it only just was, it is {value}. The verdict and the margin are those of the edge.",
+	"note edge":         "The place lies half a probe's breadth (0.6 mm) within the edge of those that ever were above {start}; at the edge itself, where it only just was, it is {value}. The verdict and the margin are those of the edge.",
 	"note margin place": "The margin in temperature is that of another place ({place}).",
 	"note heatings":     "The process has {count} heatings separated by chilling; each is judged on its own, and the best counts.",
 	"note separated":    "The time is the sum of periods with chilling in between.",
