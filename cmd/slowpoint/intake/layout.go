@@ -82,13 +82,13 @@ func (v lines) heading() (line int, score float64, names []int) {
 	last, wide := v.extent()
 	best := 0.0
 	for i := 1; i <= min(last, headLines); i++ {
-		at := slices.DeleteFunc(v.names(i, wide), func(p int) bool { return isUnit(v.at(i, p).Text) }) // units are no names
-		if len(at) < 2 {
+		at := v.names(i, wide)
+		if len(at) < 2 || !slices.ContainsFunc(at, func(p int) bool { return !isUnit(v.at(i, p).Text) }) { // units alone are no names
 			continue
 		}
 		known, alike, below := 0.0, 0.0, 0
 		for _, p := range at {
-			if isKnown(v.at(i, p).Text) {
+			if isKnown(v.at(i, p).Text) || isUnit(v.at(i+1, p).Text) {
 				known++
 			}
 			numbers, words := 0.0, 0.0
@@ -124,11 +124,8 @@ func isKnown(text string) bool {
 	if u != "" {
 		return true
 	}
-	if _, ok := tradeAims()[workbook.Key(name)]; ok || workbook.SheetNamed("Products").Known(name) != nil {
-		return true
-	}
-	stage, _ := stageOf(name)
-	return stage != ""
+	_, ok := tradeAims()[workbook.Key(name)]
+	return ok || workbook.SheetNamed("Products").Known(name) != nil
 }
 
 // quantities are those of which a heading may give the unit, the likelier ones first.
@@ -181,7 +178,7 @@ func guess(g *workbook.Grid, card bool) *layout {
 		l := &layout{kind: columnLayout, heading: cell.ColumnName(col), heads: [2]int{col, col}, why: "column " + cell.ColumnName(col) + " looks most like headings"}
 		return l.data(columns)
 	case row == 0:
-		return &layout{kind: rowLayout, heading: "1", heads: [2]int{1, 1}, from: 2, why: "nothing looks like headings, so row 1 is taken: look at it"}
+		return &layout{kind: rowLayout, heading: "1", heads: [2]int{1, 1}, from: 2, why: "nothing looks like headings, so row 1 is taken; take this row out unless the sheet has products"}
 	}
 	l := &layout{kind: rowLayout, heads: [2]int{row, row}}
 	switch {

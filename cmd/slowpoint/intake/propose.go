@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"path/filepath"
+	"regexp"
 	"strconv"
 	"strings"
 
@@ -123,12 +124,7 @@ func (p *proposal) column(source string, h *theirHeading, l *layout, all []*thei
 	}
 	switch {
 	case !ok:
-		switch {
-		case h.unit != "" && unit.Temperature.Unit(h.unit) != nil:
-			ask = append(ask, "A temperature: of what, and of which step?")
-		case h.unit != "" && unit.Duration.Unit(h.unit) != nil, h.clocks():
-			ask = append(ask, "A time: of which step?")
-		}
+		ask = append(ask, h.doubts()...)
 		row["Unit"] = ""
 	case used[place] != "":
 		ask = append(ask, "Could be "+a.sheet.Name+" › "+a.column.Heading+" too, which is proposed for "+used[place]+".")
@@ -195,6 +191,10 @@ func (h *theirHeading) trade(all []*theirHeading) (aim, bool) {
 	if !ok || !h.fits(a.column) {
 		return aim{}, false
 	}
+	if a.column.Heading == "Product" && listsFoods(all) {
+		foods := workbook.SheetNamed("Foods")
+		return aim{sheet: foods, column: foods.Column("Food"), why: "beside the parts of a composition"}, true
+	}
 	a.part = h.stage(a.sheet, all)
 	return a, true
 }
@@ -220,9 +220,9 @@ func (h *theirHeading) ofStage(all []*theirHeading) (aim, bool) {
 	}
 	switch {
 	case column != "":
-	case h.unit != "" && unit.Temperature.Unit(h.unit) != nil:
+	case h.isOf(&unit.Temperature):
 		column = "Temperature"
-	case h.unit != "" && unit.Duration.Unit(h.unit) != nil, h.clocks():
+	case h.isOf(&unit.Duration):
 		column = "Duration"
 	default:
 		return aim{}, false
@@ -252,6 +252,17 @@ func (h *theirHeading) isList(all []*theirHeading) bool {
 		}
 	}
 	return false
+}
+
+// listsFoods tells whether the sheet gives the compositions of foods.
+func listsFoods(all []*theirHeading) bool {
+	n := 0
+	for _, o := range all {
+		if a, ok := tradeAims()[workbook.Key(o.name)]; ok && a.sheet.Name == "Foods" {
+			n++
+		}
+	}
+	return n >= 3
 }
 
 // fits tells whether a column can hold what the heading says: its unit is one of the column's quantity.
@@ -295,15 +306,49 @@ func (h *theirHeading) ownUnits(q *unit.Quantity) bool {
 	return len(h.cells) > 0
 }
 
-// clocks tells whether every cell is a time.
+// isOf tells whether the heading gives a unit of a quantity, or else every cell brings one.
+func (h *theirHeading) isOf(q *unit.Quantity) bool {
+	if h.unit != "" {
+		return q.Unit(h.unit) != nil
+	}
+	return h.ownUnits(q)
+}
+
+// doubts asks about a heading for which no place is proposed.
+func (h *theirHeading) doubts() []string {
+	stage, _ := stageOf(h.name)
+	switch {
+	case h.isOf(&unit.Temperature):
+		return []string{"A temperature: of what, and of which step?"}
+	case h.isOf(&unit.Duration), h.clocks():
+		return []string{"A time: of which step?"}
+	case stage != "" && h.unit == "" && h.numbers():
+		return []string{"Of the step " + stage + " a temperature, in °C or °F, or a time, in min or h? Nothing in the sheet says it."}
+	}
+	return nil
+}
+
+// clocks tells whether every cell is a time, also one that may be minutes and seconds.
 func (h *theirHeading) clocks() bool {
 	for _, e := range h.cells {
-		if e.Form != workbook.Clock {
+		if e.Form != workbook.Clock && !clock.MatchString(e.Text) {
 			return false
 		}
 	}
 	return len(h.cells) > 0
 }
+
+// numbers tells whether every cell is a plain number.
+func (h *theirHeading) numbers() bool {
+	for _, e := range h.cells {
+		if e.Form == workbook.Clock || e.Kind != workbook.Figure && !plainDigits.MatchString(e.Text) {
+			return false
+		}
+	}
+	return len(h.cells) > 0
+}
+
+var plainDigits = regexp.MustCompile(`^[-−+]?[0-9]+([.,][0-9]+)?$`)
 
 // The most words of a list, and the most values that are shown of a column; long ones are cut.
 const (
