@@ -183,7 +183,11 @@ func TestPredictedSlabs(t *testing.T) {
 					}
 					return
 				}
-				closeTo(t, name, f.Value, want, tol)
+				got := f.Value
+				if l.clocked() { // the worst of the dense places lies at the edge, the place named half a probe's breadth within
+					got = atEdge(f)
+				}
+				closeTo(t, name, got, want, tol)
 				if need := *f.Required; math.Abs(want-need) > 3*tol {
 					if met := (want >= need) == least; met != (f.Verdict == Met) {
 						t.Errorf("%s: %v at %g against %g: %s", name, f.Verdict, want, need, f.Why)
