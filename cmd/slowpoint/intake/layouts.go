@@ -30,14 +30,14 @@ func (o *opened) each(use func(record)) {
 	}
 }
 
-// named fills the cells that are the names of file and sheet.
-func (o *opened) named1(i int) bool {
+// ownName fills the cells that are the names of file and sheet.
+func (o *opened) ownName(i int) bool {
 	switch o.src.wheres[i].kind {
 	case byFile:
-		o.cells[i] = found{e: &o.file1}
+		o.cells[i] = found{e: &o.fileName}
 	case bySheet:
-		o.cells[i] = found{e: &o.sheet1}
-		if o.sheet1.Text == "" {
+		o.cells[i] = found{e: &o.sheetName}
+		if o.sheetName.Text == "" {
 			o.cells[i].e = &blank
 		}
 	case byAnything:
@@ -72,7 +72,7 @@ func (o *opened) eachRow(use func(record)) {
 			}
 		}
 		for i := range src.wheres {
-			if !o.named1(i) {
+			if !o.ownName(i) {
 				o.cells[i] = found{e: o.across[o.lines[i]], row: row.N, col: o.lines[i]}
 			}
 		}
@@ -121,7 +121,7 @@ func (o *opened) eachColumn(use func(record)) {
 		}
 		o.from = col
 		for i := range src.wheres {
-			if o.named1(i) {
+			if o.ownName(i) {
 				continue
 			}
 			o.cells[i] = found{e: &blank, row: o.lines[i], col: col}
@@ -190,7 +190,7 @@ func (o *opened) eachBlock(use func(record)) {
 // form fills the cells of a record between the rows from and to; above is the row that places count from, 0 if they are absolute.
 func (o *opened) form(above int) {
 	for i, w := range o.src.wheres {
-		if o.named1(i) {
+		if o.ownName(i) {
 			continue
 		}
 		f := found{e: &blank}

@@ -93,14 +93,15 @@ type rule struct {
 type target struct {
 	sheet  *workbook.Sheet
 	part   string
-	partAt string  // where the mapping names the part first
-	slots  []*put1 // of each column of the sheet; nil: nobody fills it
-	from   int     // index of its first slot among those of the source
-	mapped bool    // not only constants fill it
+	partAt string    // where the mapping names the part first
+	slots  []*filler // of each column of the sheet; nil: nobody fills it
+	from   int       // index of its first slot among those of the source
+	n      int       // its index in source.rows
+	mapped bool      // not only constants fill it
 }
 
-// put1 is what fills one place of the plan.
-type put1 struct {
+// filler is what fills one place of the plan.
+type filler struct {
 	mapped    *mapped
 	constants []*constant
 	byWords   bool
@@ -213,9 +214,7 @@ func (m *Mapping) readSources() {
 		}
 		s.layout = l.Choice("Layout")
 		m.readHeads(s)
-		if !l.Sound() {
-			s.suffer(rowFault.problem(l.Ref(), cell.Fault, "", ""))
-		}
+		s.wants(l)
 	}
 	if m.t.Grid("Sources") != nil && len(m.sources) == 0 && !m.lost {
 		m.tell(cell.Ref{Sheet: m.t.Grid("Sources").Name}, "", "", noSources)
@@ -381,7 +380,7 @@ func (s *source) target(sheet *workbook.Sheet, part string, l *workbook.Line) *t
 			return t
 		}
 	}
-	t := &target{sheet: sheet, part: part, slots: make([]*put1, len(sheet.Columns))}
+	t := &target{sheet: sheet, part: part, slots: make([]*filler, len(sheet.Columns))}
 	if l != nil {
 		t.partAt = l.At("Part").String()
 	}
@@ -389,9 +388,9 @@ func (s *source) target(sheet *workbook.Sheet, part string, l *workbook.Line) *t
 	return t
 }
 
-func (s slot) fill() *put1 {
+func (s slot) fill() *filler {
 	if s.row.slots[s.col] == nil {
-		s.row.slots[s.col] = &put1{}
+		s.row.slots[s.col] = &filler{}
 	}
 	return s.row.slots[s.col]
 }
@@ -437,6 +436,14 @@ func (m *Mapping) readColumns() {
 		if c.words != nil {
 			m.alsoFills(s, c)
 		}
+		s.wants(l)
+	}
+}
+
+// wants lets a source suffer from a row of which a cell could not be read, which was told.
+func (s *source) wants(l *workbook.Line) {
+	if !l.Sound() {
+		s.suffer(rowFault.problem(l.Ref(), cell.Fault, "", ""))
 	}
 }
 
@@ -523,6 +530,7 @@ func (m *Mapping) readConstants() {
 				break
 			}
 		}
+		s.wants(l)
 		there.constants = append(there.constants, k)
 		s.constants = append(s.constants, k)
 	}
@@ -543,6 +551,7 @@ func (m *Mapping) own(l *workbook.Line, heading string, c *workbook.Column, u *u
 	t, e := c.Take(l.Entry(heading), workbook.Under{At: at, Grid: g, Unit: u, Decimal: unit.Unsure})
 	if e != nil {
 		e.Field = heading
+		e.Hint = strings.ReplaceAll(e.Hint, ", or fill the item Decimal sign of the sheet Plan", "")
 		if strings.HasPrefix(e.Msg, noUnit) {
 			e.Msg, e.Hint = fill(ownNoUnit.msg, []string{c.Heading}), fill(ownNoUnit.hint, []string{c.Heading, c.Quantity.Listing()})
 		}
@@ -588,6 +597,7 @@ func (m *Mapping) readRules() {
 			m.blame(s, l, "When", r.when, anyBlank)
 			continue
 		}
+		s.wants(l)
 		if ok && r.where >= 0 {
 			s.rules = append(s.rules, r)
 		}
@@ -690,6 +700,7 @@ func (m *Mapping) arrange(s *source) {
 		for _, t := range s.rows {
 			if t.sheet == sheet {
 				t.from = s.slots
+				t.n = len(rows)
 				s.slots += len(sheet.Columns)
 				rows = append(rows, t)
 			}

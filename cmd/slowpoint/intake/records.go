@@ -25,8 +25,7 @@ type importer struct {
 	// of the source at hand
 	values []Value // of each slot
 	filled []bool  // of each slot
-	by     []string
-	some   []bool // of each target: a mapped cell is filled
+	some   []bool  // of each target: a mapped cell is filled
 	key    []byte
 }
 
@@ -88,9 +87,19 @@ func (im *importer) total() int {
 // everything is what is wrong with the mapping and with their files, in order.
 func (im *importer) everything() cell.Errors {
 	var all cell.Errors
-	all = append(all, im.m.t.Problems()...)
-	all = append(all, im.m.problems...)
-	all = append(all, im.problems...)
+	type same struct {
+		at  cell.Ref
+		msg string
+	}
+	seen := map[same]bool{} // two sources may read one sheet
+	for _, list := range []cell.Errors{im.m.t.Problems(), im.m.problems, im.problems} {
+		for _, e := range list {
+			if k := (same{e.At, e.Msg}); !seen[k] {
+				seen[k] = true
+				all.Add(e)
+			}
+		}
+	}
 	order := append([]string(nil), im.m.t.Sheets()...)
 	for i, f := range im.files {
 		order = append(order, f.Name)
@@ -240,7 +249,7 @@ func (im *importer) decimals(file int) {
 // begin makes room for the records of a source.
 func (im *importer) begin(s *source) {
 	im.values, im.filled = make([]Value, s.slots), make([]bool, s.slots)
-	im.by, im.some = make([]string, s.slots), make([]bool, len(s.rows))
+	im.some = make([]bool, len(s.rows))
 }
 
 // record makes the rows of one record, leaves it out, or tells why it cannot be imported.
@@ -447,7 +456,7 @@ func (im *importer) take(o *opened, rec record, i int, m *mapped, f *found, at P
 	}
 	v := Value{Column: c, At: at}
 	v.set(f.e, t, h.unit, o.decimal, false)
-	im.put(o, rec, m.to, v, place.String())
+	im.put(o, rec, m.to, v)
 }
 
 // notTaken tells why a column does not take a cell; that a heading lacks its unit is told there too.
@@ -483,11 +492,10 @@ func (im *importer) say(o *opened, rec record, m *mapped, s *said, at Place, e *
 		im.refuse(o, rec, at, m.to.column(), typed, wordRefused, s.fault.Typed, s.at, s.fault.Msg, s.fault.Hint)
 		return
 	}
-	place := o.ref(at.Row, at.Col).String()
 	if s.self != nil {
 		v := *s.self
 		v.At = at
-		im.put(o, rec, m.to, v, place)
+		im.put(o, rec, m.to, v)
 	}
 	for _, w := range s.word.ours {
 		if w.sheet == nil || w.blank {
@@ -495,7 +503,7 @@ func (im *importer) say(o *opened, rec record, m *mapped, s *said, at Place, e *
 		}
 		v := w.value
 		v.At = at
-		im.put(o, rec, slot{o.src.target(w.sheet, m.to.row.part, nil), w.col}, v, place)
+		im.put(o, rec, slot{o.src.target(w.sheet, m.to.row.part, nil), w.col}, v)
 	}
 }
 
@@ -508,19 +516,23 @@ func (list *wordList) theirs() []string {
 	return out
 }
 
-// put fills a place of the plan; by is what fills it.
-func (im *importer) put(o *opened, rec record, to slot, v Value, by string) {
+// put fills a place of the plan.
+func (im *importer) put(o *opened, rec record, to slot, v Value) {
 	i := to.index()
 	if im.filled[i] {
-		im.refuse(o, rec, v.At, v.Column, "", filledTwice, v.Column.Heading, im.by[i], by)
+		im.refuse(o, rec, v.At, v.Column, "", filledTwice, v.Column.Heading, im.by(&im.values[i]), im.by(&v))
 		return
 	}
-	im.values[i], im.filled[i], im.by[i] = v, true, by
-	for k, t := range o.src.rows {
-		if t == to.row {
-			im.some[k] = true
-		}
+	im.values[i], im.filled[i] = v, true
+	im.some[to.row.n] = true
+}
+
+// by words the cell that a value comes from: theirs or, of a constant, that of the mapping.
+func (im *importer) by(v *Value) string {
+	if v.At.Row == 0 && v.Const != "" {
+		return v.Const
 	}
+	return im.where(v.At)
 }
 
 // constants fills what the mapping says once for all records, in the rows that have a filled cell or only constants.
@@ -532,11 +544,11 @@ func (im *importer) constants(o *opened, rec record) {
 		i := k.to.index()
 		v := k.value
 		if im.filled[i] {
-			im.refuse(o, rec, rec.at, v.Column, "", filledTwice, v.Column.Heading, im.by[i], v.Const)
+			im.refuse(o, rec, rec.at, v.Column, "", filledTwice, v.Column.Heading, im.by(&im.values[i]), v.Const)
 			continue
 		}
 		v.At = Place{File: o.file}
-		im.values[i], im.filled[i], im.by[i] = v, true, v.Const
+		im.values[i], im.filled[i] = v, true
 	}
 }
 
@@ -636,7 +648,7 @@ func (im *importer) told(rec record, c *workbook.Column, t *target) bool {
 }
 
 // missing tells of a needed cell that is blank.
-func (im *importer) missing(o *opened, rec record, p *put1, c *workbook.Column) {
+func (im *importer) missing(o *opened, rec record, p *filler, c *workbook.Column) {
 	_, mend := c.Missing()
 	switch {
 	case p != nil && p.mapped != nil:

@@ -28,14 +28,14 @@ type opened struct {
 	decimal unit.Decimal
 	shown   string // the cell that shows the decimal sign; "" if the mapping says it
 
-	cells   []found           // of each where, of the record at hand
-	across  []*workbook.Entry // rows: the cells of the row at hand, by column
-	row     *workbook.Row     // rows: the row at hand
-	from    int               // first row (blocks, sheet) or the column (columns) of the record at hand
-	to      int               // its last row
-	tallies [3][]tally        // of each where: formulas, links, signs by evidence
-	file1   workbook.Entry    // the file's name
-	sheet1  workbook.Entry    // the sheet's name
+	cells     []found           // of each where, of the record at hand
+	across    []*workbook.Entry // rows: the cells of the row at hand, by column
+	row       *workbook.Row     // rows: the row at hand
+	from      int               // first row (blocks, sheet) or the column (columns) of the record at hand
+	to        int               // its last row
+	tallies   [3][]tally        // of each where: formulas, links, signs by evidence
+	fileName  workbook.Entry    // the file's name
+	sheetName workbook.Entry    // the sheet's name
 }
 
 // heading is what stands over the values of a where.
@@ -87,8 +87,8 @@ func (im *importer) open(src *source, file int, g *workbook.Grid) *opened {
 	for i := range o.tallies {
 		o.tallies[i] = make([]tally, n)
 	}
-	o.file1 = workbook.Entry{Kind: workbook.Text, Text: im.files[file].Name}
-	o.sheet1 = workbook.Entry{Kind: workbook.Text, Text: g.Name}
+	o.fileName = workbook.Entry{Kind: workbook.Text, Text: im.files[file].Name}
+	o.sheetName = workbook.Entry{Kind: workbook.Text, Text: g.Name}
 	if g.Protected {
 		im.problems.Add(protected.problem(cell.Ref{Sheet: o.label}, cell.Note, "", ""))
 	}
@@ -121,7 +121,7 @@ func (o *opened) refuse(e cell.Error) {
 	}
 }
 
-// cell gives a cell by its line (column of rows, row of columns) and its place among the headings.
+// headCell gives a cell by its line (column of rows, row of columns) and its place among the headings.
 func (o *opened) headCell(line, head int) *workbook.Entry {
 	row, col := head, line
 	if o.src.layout == columnLayout {

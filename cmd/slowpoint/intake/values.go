@@ -94,7 +94,7 @@ func stored(s string) string {
 	return digits(x)
 }
 
-// unitOf finds the unit that a heading of theirs gives for a quantity: in brackets, as the whole of it or of its group, behind a comma or,
+// headingUnit finds the unit that a heading of theirs gives for a quantity: in brackets, as the whole of it or of its group, behind a comma or,
 // if it can be nothing else, as its last word. inside is what stands in brackets.
 func headingUnit(q *unit.Quantity, heading string) (u *unit.Unit, inside string) {
 	parts := strings.Split(heading, "›")

@@ -53,6 +53,9 @@ func (m *Mapping) readWords() {
 				m.blame(nil, l, "Theirs", theirs, wordTwice, strconv.Itoa(other.line.Ref().Row))
 			}
 		}
+		if !l.Sound() {
+			m.lost = true
+		}
 		w.ours = append(w.ours, o)
 	}
 }
