@@ -74,7 +74,6 @@ func importThem(cmd *cobra.Command, args []string, o *importOptions, files *shel
 		}
 	}
 	bar := progressOf(cmd.ErrOrStderr(), len(names)+2, "reading", true)
-	defer bar.Finish()
 	theirs, err := readTheirs(names, bar)
 	if err != nil {
 		bar.Clear()
