@@ -406,31 +406,39 @@ func blockWord(g *workbook.Grid) string {
 			return ""
 		}
 	}
+	starts := map[string][]spotAt{} // by the key of the word; of the first columns
+	var words []string
 	for i := range g.Rows {
 		for _, e := range g.Rows[i].Cells {
-			if e.Col > 3 || !isName(&e) {
-				continue
-			}
-			starts := startsOf(g, e.Text)
-			if len(starts) < 2 {
-				continue
-			}
-			same := 0
-			for d := 1; d <= min(starts[1].row-starts[0].row-1, belowLines); d++ {
-				label, all := workbook.Key(v.at(starts[0].row+d, starts[0].col).Text), true
-				for _, s := range starts[1:] {
-					all = all && s.col == starts[0].col && workbook.Key(v.at(s.row+d, s.col).Text) == label
+			if e.Col <= 3 && isName(&e) {
+				k := workbook.Key(e.Text)
+				if starts[k] == nil {
+					words = append(words, e.Text)
 				}
-				if all && isName(v.at(starts[0].row+d, starts[0].col)) {
-					same++
-				}
-			}
-			if same >= 2 {
-				return e.Text
+				starts[k] = append(starts[k], spotAt{g.Rows[i].N, int(e.Col)})
 			}
 		}
 	}
+	for _, w := range words {
+		if at := starts[workbook.Key(w)]; len(at) > 1 && v.comesAgain(at) {
+			return w
+		}
+	}
 	return ""
+}
+
+// comesAgain tells whether two labels at least stand below each of these cells, the same ones in the same places.
+func (v lines) comesAgain(starts []spotAt) bool {
+	same := 0
+	for d := 1; d <= min(starts[1].row-starts[0].row-1, belowLines); d++ {
+		first := v.at(starts[0].row+d, starts[0].col)
+		if isName(first) && !slices.ContainsFunc(starts[1:], func(s spotAt) bool {
+			return s.col != starts[0].col || workbook.Key(v.at(s.row+d, s.col).Text) != workbook.Key(first.Text)
+		}) {
+			same++
+		}
+	}
+	return same >= 2
 }
 
 // sameCards finds sheets that have the same labels in the same cells, on several rows: cards of one form. It gives for each sheet the
