@@ -27,6 +27,11 @@ func gridOf(name, text string) *workbook.Grid {
 			}
 			row.Cells = append(row.Cells, e)
 		}
+		for i := range row.Cells {
+			if row.Cells[i].Text == "#REF!" {
+				row.Cells[i].Kind = workbook.Broken
+			}
+		}
 		if len(row.Cells) > 0 {
 			g.Rows = append(g.Rows, row)
 		}
@@ -146,7 +151,7 @@ Source | Theirs | Sheet | Column | Part | Unit | Words | Confirmed
 S | Dish | Products | Product | | | | yes
 S | Tin | Products | Shape | | | tins | yes
 S | Start | Products | Start temperature | | °C | | yes
-S | Oven (°C) | Steps | Temperature | cook | | | yes
+S | Oven | Steps | Temperature | cook | | | yes
 S | Cook | Steps | Duration | cook | min | | yes
 
 Constants:
@@ -189,7 +194,7 @@ func TestSays(t *testing.T) {
 		{"a place of another layout", "S | Cook |", "S | =B+3 |", "is not a column of theirs", 0},
 		{"kelvin", "| °C |", "| K |", "is kelvin", 0},
 		{"a unit of words", "Product | | |", "Product | | mm |", "takes words", 0},
-		{"a unit of another quantity", "(°C) | Steps | Temperature | cook | |", "(°C) | Steps | Duration | rest | |", "is not a unit of duration", 0},
+		{"a unit of another quantity", "Oven | Steps | Temperature | cook | |", "Oven | Steps | Duration | rest | |", "is not a unit of duration", 0},
 		{"constants for one place", "film |\n", "film |\nS | Steps | Surroundings | cook | steam |\n", "is filled by row 3 of Constants too", 0},
 		{"a constant for some records", "film |\n", "film | Cook\n", "", 2},
 		{"a constant that some records lack", "160 | 45", "160 |", "Duration is missing", 1},
@@ -201,13 +206,23 @@ func TestSays(t *testing.T) {
 		{"a word that leaves blank", "tins | low | | | slab", "tins | low | | |", "Shape is missing", 1},
 		{"no cell filled", "Hash | round | 6 | 150 | 55", " | | | | | a note", "None of the cells that are mapped is filled", 1},
 		{"no product", "Hash", "", "Product is missing", 1},
-		{"a process told in two ways", "S | Tin | Products", "S | Oven (°C) | Products | Process | | | | yes\nS | Tin | Products", "", 2},
+		{"a process told in two ways", "S | Tin | Products", "S | Oven | Products | Process | | | | yes\nS | Tin | Products", "", 2},
 		{"a decimal comma", "| 5 |", "| 5,5 |", "", 2},
 		{"both decimal signs", "| 5 | 160", "| 5,5 | '160.5 °C", "shows a decimal comma", 2},
 		{"a sign by evidence", "| 5 | 160 | 45", "| 5,5 | 160 | '1,234", "is read as 74.04 s, because S.xlsx › L!C2 shows the decimal sign", 2},
 		{"a sign in doubt", "| 45", "| '1,234", "Decimal sign in the sheet Sources of the mapping", 1},
 		{"a text that is no number", "| 45", "| about 45", "\"about 45\" is not a number", 1},
 		{"below nothing", "| 45", "| -45", "Duration must be more than 0", 1},
+		{"a unit cell that is an error", "| °C |", "| #REF! |", "The row of the mapping is at fault", 0},
+		{"a heading with another unit", "Dish | Tin | Start |", "Dish | Tin | Start (°F) |", "gives the unit °F, but the mapping", 0},
+		{"a heading in kelvin", "Oven (°C) |", "Oven (K) |", "is in kelvin", 0},
+		{"a heading of another quantity", "Oven (°C) |", "Oven (min) |", "is not a unit of temperature", 0},
+		{"a heading without unit", "Oven (°C) |", "Oven |", "has no unit; Temperature needs one", 0},
+		{"a text with its unit under a heading without", "Oven (°C) | Cook\nMash | low | 5 | 160 | 45\nHash | round | 6 | 150", "Oven | Cook\nMash | low | 5 | 160 °C | 45\nHash | round | 6 | 150", "has no unit", 1},
+		{"a heading that is not there", "Oven (°C) |", "Grill (°C) |", "is no heading", 0},
+		{"a sheet that is not there", "S | | | rows", "S | | M | rows", "is the name of no visible sheet", 0},
+		{"a file that is not there", "S | | | rows", "S | M* | | rows", "is the name of no file", 0},
+		{"a constant only where something is filled", "film |\n", "film | =F\n", "Surroundings is missing", 0},
 		{"not possible", "| 5 |", "| 5000 |", "cannot be", 1},
 	} {
 		t.Run(c.name, func(t *testing.T) {

@@ -69,15 +69,19 @@ func (v *Value) typed(text string, is unit.Value, u *unit.Unit, d unit.Decimal, 
 	}
 }
 
-// time makes a value of seconds: a number in the unit of the heading, in minutes if it has none, in seconds if that loses digits.
+// time makes a value of seconds: a number in the unit of the heading, in minutes if it has none; in minutes or seconds where that takes
+// a long row of digits.
 func (v *Value) time(seconds float64, u *unit.Unit) {
+	minute, second := unit.Duration.Unit("min"), unit.Duration.Unit("s")
 	if u == nil || strings.Contains(u.Name(), ":") {
-		u = unit.Duration.Unit("min")
+		u = minute
 	}
-	if u.In(u.Out(seconds)) != seconds {
-		u = unit.Duration.Unit("s")
+	for _, u := range []*unit.Unit{u, minute, second} {
+		v.Text, v.Number, v.Unit = digits(u.Out(seconds)), true, u.Name()
+		if len(v.Text) < 12 && u.In(u.Out(seconds)) == seconds {
+			return
+		}
 	}
-	v.Text, v.Number, v.Unit = digits(u.Out(seconds)), true, u.Name()
 }
 
 func digits(x float64) string { return strconv.FormatFloat(x, 'f', -1, 64) }

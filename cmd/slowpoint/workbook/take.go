@@ -182,6 +182,9 @@ func (c *Column) slipped(v unit.Value) string {
 // convert makes a value of a cell, by its kind and its number format.
 func (c *Column) convert(e *Entry, g *Grid, u *unit.Unit, d unit.Decimal) (unit.Value, *refusal) {
 	q := c.Quantity
+	if u == nil && q.Plain() {
+		u = &q.Units[0]
+	}
 	if e.Kind == Text {
 		v, m := q.Parse(e.Text, u, d)
 		if m != nil {
@@ -199,7 +202,7 @@ func (c *Column) convert(e *Entry, g *Grid, u *unit.Unit, d unit.Decimal) (unit.
 		switch {
 		case worded != nil:
 			u = worded
-		case q.Plain(), e.Form == Percent && q == &unit.Percent:
+		case e.Form == Percent && q == &unit.Percent:
 			u = &q.Units[0]
 		}
 	}
