@@ -90,7 +90,6 @@ var (
 	noBlock       = saying{"begins no block of {1}", "correct Heading in the sheet Sources: the whole cell that starts each block"}
 
 	// records
-	mappingFault  = saying{"The mapping is at fault ({1}){2}: {3}", "mend the mapping: {4}"}
 	hiddenRow     = saying{"{1} is hidden", "unhide it or delete it, or leave it out by a rule; what is hidden is never imported and never skipped in silence"}
 	struckCell    = saying{"is struck through, or a part of it is", "take the line away if it counts, delete the record, or leave it out by a rule"}
 	mergedCells   = saying{"The cells {1} are merged", "unmerge them and fill each cell"}

@@ -100,14 +100,6 @@ type lane struct {
 	pointed bool       // a number with a point stands in it as text
 }
 
-// title is the heading with its unit.
-func (s *lane) title() string {
-	if s.unit == nil || s.unit.Name() == "" {
-		return s.Heading
-	}
-	return s.Heading + " (" + s.unit.Name() + ")"
-}
-
 // put is a filled cell that is written.
 type put struct {
 	lane  int // index of its column
@@ -127,7 +119,7 @@ func (b *book) sheet(s *workbook.Sheet) error {
 	}
 	wide, columns, heads := 0.0, make([]*workbook.Column, len(lanes)), make([]any, len(lanes)+1)
 	for i, c := range lanes {
-		columns[i], heads[i] = c.Column, excelize.Cell{StyleID: b.looks.Heading(c.Column), Value: c.title()}
+		columns[i], heads[i] = c.Column, excelize.Cell{StyleID: b.looks.Heading(c.Column), Value: c.Titled(c.unit)}
 		wide += c.Width(c.longest)
 	}
 	heads[len(lanes)] = excelize.Cell{StyleID: b.looks.May, Value: workbook.FromHeading}
@@ -230,7 +222,7 @@ func (p *page) write(from string) error {
 		}
 		p.line = append(p.line, excelize.Cell{StyleID: style, Value: c.value})
 		_, number := c.value.(float64)
-		p.sum = append(p.sum, workbook.Filled{Heading: p.lanes[c.lane].Heading, Text: c.text, Number: number})
+		p.sum = append(p.sum, workbook.Filled{Heading: p.lanes[c.lane].Titled(p.lanes[c.lane].unit), Text: c.text, Number: number})
 	}
 	for len(p.line) < len(p.lanes) {
 		p.line = append(p.line, nil)

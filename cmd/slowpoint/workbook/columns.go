@@ -100,6 +100,14 @@ func (c *Column) Title() string {
 	return c.Heading + " (" + c.Unit + ")"
 }
 
+// Titled is the heading with another unit, as the program names it; nil: none.
+func (c *Column) Titled(u *unit.Unit) string {
+	if u == nil || u.Name() == "" {
+		return c.Heading
+	}
+	return c.Heading + " (" + u.Name() + ")"
+}
+
 // most is how many rows of the sheet are read.
 func (s *Sheet) most() int {
 	if s.Name == "Limits" || s.Name == "Groups" {

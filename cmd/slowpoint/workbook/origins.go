@@ -404,9 +404,10 @@ func columnNumber(letters string) int32 {
 // anchor reads the column #From of a sheet of the plan.
 func (r *reader) anchor(o *origins, t *table) {
 	rows := &madeRows{columns: map[int]*Column{}, anchors: map[int]anchor{}}
+	titles := map[int]string{}
 	for _, h := range t.place {
 		if h.column != nil {
-			rows.columns[h.col] = h.column
+			rows.columns[h.col], titles[h.col] = h.column, h.column.Titled(h.unit)
 		}
 	}
 	from, bad, typed := 0, formulas{}, ""
@@ -430,8 +431,8 @@ func (r *reader) anchor(o *origins, t *table) {
 		cells = cells[:0]
 		for j := range row.Cells {
 			e := &row.Cells[j]
-			if c := rows.columns[int(e.Col)]; c != nil {
-				cells = append(cells, Filled{Heading: c.Heading, Text: e.Text, Number: e.Kind == Figure})
+			if title := titles[int(e.Col)]; title != "" {
+				cells = append(cells, Filled{Heading: title, Text: e.Text, Number: e.Kind == Figure})
 			}
 		}
 		a.edited = Checksum(cells) != sum
@@ -505,27 +506,26 @@ func (r *reader) countNotImported() {
 
 // Filled is a filled cell of a made row, as it goes into its checksum.
 type Filled struct {
-	Heading string // of the row of headings, with its unit or without
+	Heading string // with its unit as the program names it: "Thickness (mm)"
 	Text    string // as stored; of a number its digits, with a decimal point
 	Number  bool   // stored as a number and not as text
 }
 
 // Checksum is that of a made row, by which the reader of the plan tells whether it was edited since: FNV-1a of 32 bits, as eight
 // hexadecimal digits, over `heading=text` of its filled cells in the order of their columns, with the control character 1F between
-// them. Headings go without their units; cells headed with # do not count; a number is written in the fewest digits that give it back.
+// them. Cells headed with # do not count; a number is written in the fewest digits that give it back.
 func Checksum(cells []Filled) string {
 	sum := fnv.New32a()
 	n := 0
 	for _, c := range cells {
-		name, _ := SplitHeading(c.Heading)
 		text := asStored(c.Text, c.Number)
-		if strings.HasPrefix(name, "#") || text == "" {
+		if strings.HasPrefix(c.Heading, "#") || text == "" {
 			continue
 		}
 		if n++; n > 1 {
 			io.WriteString(sum, "\x1f")
 		}
-		io.WriteString(sum, name)
+		io.WriteString(sum, c.Heading)
 		io.WriteString(sum, "=")
 		io.WriteString(sum, text)
 	}

@@ -22,11 +22,11 @@ func TestChecksum(t *testing.T) {
 		want  string
 	}{
 		{"nothing", nil, "811c9dc5"},
-		{"words and numbers", []Filled{{"Product", "Lasagne", false}, {"Thickness (mm)", "45", true}, {"Start temperature (°C)", "5.5", true}}, "3eb98dc5"},
+		{"words and numbers", []Filled{{"Product", "Lasagne", false}, {"Thickness (mm)", "45", true}, {"Start temperature (°C)", "5.5", true}}, "38780e22"},
 		{"spellings of a number", []Filled{{"Product", "Lasagne", false}, {"Thickness", "4.5E1", true}, {"Start temperature", "5.50000000000000001", true}}, "3eb98dc5"},
 		{"user's own columns and blanks", []Filled{{"#Shelf", "B", false}, {"Product", " Lasagne ", false}, {"Note", "", false}, {"Thickness", "45", true}, {"Start temperature", "5.5", true}, {"#From", "x", false}}, "3eb98dc5"},
-		{"percent without brackets", []Filled{{"Water %", "60,5", false}}, "11f831ee"},
-		{"another script", []Filled{{"Product", "Z\u0307urek", false}, {"Thickness (mm)", "1 1/2 in", false}}, "c4f64b38"},
+		{"percent", []Filled{{"Water (%)", "60,5", false}}, "b697eca0"},
+		{"another script", []Filled{{"Product", "Z\u0307urek", false}, {"Thickness (mm)", "1 1/2 in", false}}, "5991cb59"},
 	} {
 		if got := Checksum(c.cells); got != c.want {
 			t.Errorf("%s: %s, want %s", c.name, got, c.want)
@@ -34,6 +34,9 @@ func TestChecksum(t *testing.T) {
 	}
 	if Checksum([]Filled{{"Product", "a", false}, {"Note", "b", false}}) == Checksum([]Filled{{"Product", "a", false}, {"Family", "b", false}}) {
 		t.Error("another column gives the same checksum")
+	}
+	if Checksum([]Filled{{"Thickness (mm)", "2", true}}) == Checksum([]Filled{{"Thickness (in)", "2", true}}) {
+		t.Error("another unit gives the same checksum")
 	}
 }
 

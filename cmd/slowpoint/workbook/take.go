@@ -52,12 +52,6 @@ func (c *Column) Take(e *Entry, u Under) (Taken, *cell.Error) {
 	return t, nil
 }
 
-// HeadingUnit finds the unit that a heading gives in brackets; nil for a column of words. The error tells what a plan would say of it.
-func (c *Column) HeadingUnit(at cell.Ref, heading string) (*unit.Unit, *cell.Error) {
-	_, inside := SplitHeading(heading)
-	return headingUnit(at, heading, inside, c)
-}
-
 // Meant offers the nearest known word, for messages: "; did you mean cook?"; "" if none is near.
 func Meant(word string, known []string) string { return meant(word, known) }
 
