@@ -74,10 +74,13 @@ func importThem(cmd *cobra.Command, args []string, o *importOptions, files *shel
 		}
 	}
 	bar := progressOf(cmd.ErrOrStderr(), len(names)+2, "reading", true)
-	theirs, err := readTheirs(names, bar)
+	theirs, aside, err := readTheirs(names, args, bar)
 	if err != nil {
 		bar.Clear()
 		return &failure{exitInput, err}
+	}
+	for _, n := range aside {
+		fmt.Fprintf(cmd.ErrOrStderr(), "note: %s is left aside: it is a plan that an import made; name it if it is to be imported\n", n)
 	}
 	if o.propose != "" {
 		return propose(cmd.OutOrStdout(), args, theirs, target, files, bar)
@@ -188,19 +191,26 @@ func theirFiles(args []string, ours ...string) ([]string, error) {
 	return out, errors.Join(wrong...)
 }
 
-// readTheirs reads their files, all of them before anything is said of those that cannot be read.
-func readTheirs(names []string, bar *progressbar.ProgressBar) ([]*workbook.Spreadsheet, error) {
-	var out []*workbook.Spreadsheet
+// readTheirs reads their files, all of them before anything is said of those that cannot be read. Of a folder, plans that an import made
+// before are left aside, and named; args are the files and folders as given.
+func readTheirs(names, args []string, bar *progressbar.ProgressBar) (out []*workbook.Spreadsheet, aside []string, err error) {
 	var wrong []error
 	for _, n := range names {
 		s, err := workbook.ReadSpreadsheet(n)
-		if err != nil {
+		switch {
+		case err != nil:
 			wrong = append(wrong, err)
+		case s.Imported() && !slices.Contains(args, n):
+			aside = append(aside, n)
+		default:
+			out = append(out, s)
 		}
-		out = append(out, s)
 		bar.Add(1)
 	}
-	return out, errors.Join(wrong...)
+	if len(out) == 0 && len(wrong) == 0 {
+		wrong = append(wrong, fmt.Errorf("%s: only plans that an import made; name the spreadsheets to import", strings.Join(args, " ")))
+	}
+	return out, aside, errors.Join(wrong...)
 }
 
 // propose writes a mapping to be confirmed.

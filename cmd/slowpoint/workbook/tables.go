@@ -97,3 +97,16 @@ func ReadSpreadsheet(name string) (*Spreadsheet, error) {
 	}
 	return s, nil
 }
+
+// Imported tells whether the file is a plan that an import made.
+func (s *Spreadsheet) Imported() bool {
+	has := func(list []*Sheet, name string) bool {
+		for _, g := range s.Sheets {
+			if f := sheetOf(list, g.Name); f != nil && f.Name == name {
+				return true
+			}
+		}
+		return false
+	}
+	return has(Sheets, "Products") && has(MadeSheets, "Origins")
+}
