@@ -46,51 +46,174 @@ type change struct {
 
 // lever says, for a product with a limit that is not met, which single change would meet its limits in the model with everything else
 // unchanged: a smaller size; for heating, a longer step or one that ends warmer; for chilling, a colder medium. It says so too where
-// none does. "" if that was not looked for. Sizes are rounded down, times up, temperatures of chilling down: to the safe side.
+// none does. Limits that none of the changes bears on, such as a question that is not answered, are left out of that and named.
+// "" if that was not looked for. Sizes are rounded down, times up, temperatures of chilling down: to the safe side.
 func (r *runner) lever(p *workbook.Product, now *report.Product) string {
 	if now.Judgement.Verdict != rules.NotMet || len(r.plan.Products) > leverPlans {
 		return ""
 	}
-	var every, some, none []string
-	for _, c := range r.changes(p, now) {
-		missed := missedOf(now, c.aims)
-		n, all := r.search(p, now, &c)
-		switch words := fmt.Sprintf("%s %s → ", c.what, c.from); {
-		case n == 0:
-			none = append(none, c.far)
-		case all:
-			every = append(every, words+c.to(n))
-		default:
-			some = append(some, fmt.Sprintf("%s%s would meet %s, but not every limit", words, c.to(n), quoted(missed)))
+	found := r.tryAll(p, now)
+	fixed := found.fixed(now)
+	if len(fixed) > 0 { // look again, at the others
+		others := r.without(fixed)
+		found = tried{}
+		if rest, err := others.judged(p); err == nil && rest.Judgement.Verdict == rules.NotMet {
+			found = others.tryAll(p, rest)
 		}
 	}
-	return leverWords(every, some, none)
+	return leverWords(found.every, found.some, found.none, fixedWords(fixed))
 }
 
-// leverWords puts together what was found.
-func leverWords(every, some, none []string) string {
+// tried is what came of the changes.
+type tried struct {
+	every, some, none []string // changes that meet every limit, those they aim at, none; in words
+	moved             map[*rules.Limit]bool
+	any               bool // something was tried
+}
+
+// tryAll tries every change that is worth it.
+func (r *runner) tryAll(p *workbook.Product, now *report.Product) tried {
+	t := tried{moved: map[*rules.Limit]bool{}}
+	for _, c := range r.changes(p, now) {
+		missed := missedOf(now, c.aims)
+		n, all := r.search(p, now, &c, t.moved)
+		t.any = true
+		switch words := fmt.Sprintf("%s %s → ", c.what, c.from); {
+		case n == 0:
+			t.none = append(t.none, c.far)
+		case all:
+			t.every = append(t.every, words+c.to(n))
+		default:
+			t.some = append(t.some, fmt.Sprintf("%s%s would meet %s", words, c.to(n), quoted(missed)))
+		}
+	}
+	return t
+}
+
+// fixed are the findings on limits that must be met, are not, and stayed just as they are whatever was tried.
+func (t *tried) fixed(now *report.Product) []*rules.Finding {
+	var out []*rules.Finding
+	for i := range now.Judgement.Findings {
+		if f := &now.Judgement.Findings[i]; t.any && missed(f) && !t.moved[f.Limit] {
+			out = append(out, f)
+		}
+	}
+	return out
+}
+
+// without is the same job without some limits.
+func (r *runner) without(fixed []*rules.Finding) *runner {
+	plan := *r.plan
+	plan.Limits = nil
+	for i := range r.plan.Limits {
+		l := &r.plan.Limits[i]
+		if !slices.ContainsFunc(fixed, func(f *rules.Finding) bool { return f.Limit == l }) {
+			plan.Limits = append(plan.Limits, *l)
+		}
+	}
+	return &runner{plan: &plan, head: r.head, options: r.options}
+}
+
+// moves notes the limits of which a change says anything else than before.
+func moves(before, after *report.Product, moved map[*rules.Limit]bool) {
+	differ := func(a, b *float64) bool {
+		return (a == nil) != (b == nil) || a != nil && math.Abs(*a-*b) > 1e-6*(1+math.Abs(*a)) // beyond the last digits
+	}
+	for i := range before.Judgement.Findings {
+		f := &before.Judgement.Findings[i]
+		for k := range after.Judgement.Findings {
+			if g := &after.Judgement.Findings[k]; g.Limit == f.Limit {
+				moved[f.Limit] = moved[f.Limit] || g.Verdict != f.Verdict || g.Level != f.Level || differ(f.Value, g.Value) || differ(f.MarginK, g.MarginK) || differ(f.MarginS, g.MarginS)
+			}
+		}
+	}
+}
+
+// fixedWords says of limits that nothing tried bears on how they stand; "" for none.
+func fixedWords(fixed []*rules.Finding) string {
+	var order []string
+	names := map[string][]string{}
+	for _, f := range fixed {
+		why := "cannot be judged whatever of this is changed"
+		switch {
+		case f.Verdict == rules.NotMet && f.Limit.Kind == rules.Stated:
+			why = "stays not met as long as its answer stands"
+		case f.Verdict == rules.NotMet:
+			why = "stays not met whatever of this is changed"
+		case f.Limit.Kind == rules.Stated && f.Limit.Unreadable == "":
+			why = "cannot be judged until it is answered"
+		case len(f.Limit.Faults()) > 0:
+			why = "cannot be judged until its row is mended"
+		}
+		if names[why] == nil {
+			order = append(order, why)
+		}
+		names[why] = append(names[why], f.Limit.Name)
+	}
+	var s []string
+	for _, why := range order {
+		many := names[why]
+		if len(many) > 1 {
+			why = strings.NewReplacer("it is answered", "they are answered", "its row is", "their rows are", "stays", "stay", "its answer stands", "their answers stand").Replace(why)
+		}
+		s = append(s, named(many)+" "+why)
+	}
+	return strings.Join(s, "; ")
+}
+
+// named names limits, up to three of them.
+func named(names []string) string {
+	const most = 3
+	var s []string
+	for _, n := range names[:min(len(names), most)] {
+		s = append(s, "\""+n+"\"")
+	}
+	if more := len(names) - most; more > 0 {
+		s = append(s, count(more, "further limit"))
+	}
+	if len(s) == 1 {
+		return s[0]
+	}
+	return strings.Join(s[:len(s)-1], ", ") + " and " + s[len(s)-1]
+}
+
+// leverWords puts together what was found; fixed is what stays open whatever is changed.
+func leverWords(every, some, none []string, fixed string) string {
 	const unchanged = "With everything else unchanged, "
+	limits := "limit"
+	if fixed != "" {
+		limits, fixed = "other limit", "; "+fixed
+	}
 	var s []string
 	switch {
 	case len(every) == 1:
-		s = append(s, unchanged+every[0]+" would meet every limit in the model.")
+		s = append(s, unchanged+every[0]+" would meet every "+limits+" in the model"+fixed+".")
 	case len(every) > 1:
-		s = append(s, unchanged+"each of these alone would meet every limit in the model: "+strings.Join(every, "; ")+".")
+		s = append(s, unchanged+"each of these alone would meet every "+limits+" in the model"+fixed+": "+strings.Join(every, "; ")+".")
 	}
+	but := ", but not every " + limits
 	switch {
 	case len(some) > 0 && len(s) == 0:
-		s = append(s, unchanged+strings.Join(some, "; ")+".")
+		s = append(s, unchanged+strings.Join(some, but+"; ")+but+fixed+".")
 	case len(some) > 0:
-		s = append(s, "Alone, "+strings.Join(some, "; ")+".")
+		s = append(s, "Alone, "+strings.Join(some, but+"; ")+but+".")
 	}
 	switch {
 	case len(none) == 0:
 	case len(s) == 0:
-		s = append(s, unchanged+"nothing that was tried meets the limits in the model: "+strings.Join(none, ", ")+". Look at times, temperatures and air together.")
+		s = append(s, unchanged+"nothing that was tried meets the "+limits+"s in the model"+fixed+": "+strings.Join(none, ", ")+". Look at times, temperatures and air together.")
 	default:
 		s = append(s, "Not enough alone: "+strings.Join(none, ", ")+".")
 	}
+	if len(s) == 0 && fixed != "" {
+		return "No single change of a size, a heating or a chilling helps: " + strings.TrimPrefix(fixed, "; ") + "."
+	}
 	return strings.Join(s, " ")
+}
+
+// missed tells whether a finding stands against a product.
+func missed(f *rules.Finding) bool {
+	return f.Level == "must" && f.Verdict != rules.Met && f.Verdict != rules.NotApplicable
 }
 
 // missedOf are the names of limits of a sort that must be met and are not.
@@ -98,7 +221,7 @@ func missedOf(d *report.Product, aims func(*rules.Limit) bool) []string {
 	var names []string
 	for i := range d.Judgement.Findings {
 		f := &d.Judgement.Findings[i]
-		if f.Level == "must" && f.Verdict != rules.Met && f.Verdict != rules.NotApplicable && (aims == nil || aims(f.Limit)) && !slices.Contains(names, f.Limit.Name) {
+		if missed(f) && (aims == nil || aims(f.Limit)) && !slices.Contains(names, f.Limit.Name) {
 			names = append(names, f.Limit.Name)
 		}
 	}
@@ -140,8 +263,8 @@ func (r *runner) changes(p *workbook.Product, now *report.Product) []change {
 }
 
 // search finds the least number of steps of a change at which the limits that it aims at are met and none that was met is lost; 0 if
-// there is none. all tells whether every limit is met then.
-func (r *runner) search(p *workbook.Product, now *report.Product, c *change) (n int, all bool) {
+// there is none. all tells whether every limit is met then; moved notes the limits that the change bears on.
+func (r *runner) search(p *workbook.Product, now *report.Product, c *change, moved map[*rules.Limit]bool) (n int, all bool) {
 	meets := func(k int) bool {
 		q := *p
 		q.Steps = slices.Clone(p.Steps)
@@ -150,6 +273,7 @@ func (r *runner) search(p *workbook.Product, now *report.Product, c *change) (n 
 		if err != nil {
 			return false
 		}
+		moves(now, d, moved)
 		all = d.Judgement.Verdict == rules.Met
 		return all || c.aims != nil && len(missedOf(d, c.aims)) == 0 && keeps(now, d)
 	}

@@ -178,16 +178,22 @@ func TestLeverWords(t *testing.T) {
 	for _, c := range []struct {
 		name              string
 		every, some, none []string
+		fixed             string
 		want              string
 	}{
-		{"one", []string{"a 2 → 1"}, nil, nil, "With everything else unchanged, a 2 → 1 would meet every limit in the model."},
-		{"two", []string{"a", "b"}, nil, []string{"c up to 9"}, "With everything else unchanged, each of these alone would meet every limit in the model: a; b. Not enough alone: c up to 9."},
-		{"a part", nil, []string{"b would meet \"x\", but not every limit"}, nil, "With everything else unchanged, b would meet \"x\", but not every limit."},
-		{"all and a part", []string{"a"}, []string{"b would meet \"x\""}, nil, "With everything else unchanged, a would meet every limit in the model. Alone, b would meet \"x\"."},
-		{"none", nil, nil, []string{"a", "b"}, "With everything else unchanged, nothing that was tried meets the limits in the model: a, b. Look at times, temperatures and air together."},
-		{"nothing tried", nil, nil, nil, ""},
+		{"one", []string{"a 2 → 1"}, nil, nil, "", "With everything else unchanged, a 2 → 1 would meet every limit in the model."},
+		{"two", []string{"a", "b"}, nil, []string{"c up to 9"}, "", "With everything else unchanged, each of these alone would meet every limit in the model: a; b. Not enough alone: c up to 9."},
+		{"a part", nil, []string{"b would meet \"x\""}, nil, "", "With everything else unchanged, b would meet \"x\", but not every limit."},
+		{"all and a part", []string{"a"}, []string{"b would meet \"x\""}, nil, "", "With everything else unchanged, a would meet every limit in the model. Alone, b would meet \"x\", but not every limit."},
+		{"none", nil, nil, []string{"a", "b"}, "", "With everything else unchanged, nothing that was tried meets the limits in the model: a, b. Look at times, temperatures and air together."},
+		{"one, others open", []string{"a 2 → 1"}, nil, nil, `"q" cannot be judged until it is answered`,
+			`With everything else unchanged, a 2 → 1 would meet every other limit in the model; "q" cannot be judged until it is answered.`},
+		{"none, others open", nil, nil, []string{"a"}, `"q" stays open`,
+			`With everything else unchanged, nothing that was tried meets the other limits in the model; "q" stays open: a. Look at times, temperatures and air together.`},
+		{"only open ones", nil, nil, nil, `"q" stays open`, `No single change of a size, a heating or a chilling helps: "q" stays open.`},
+		{"nothing tried", nil, nil, nil, "", ""},
 	} {
-		if got := leverWords(c.every, c.some, c.none); got != c.want {
+		if got := leverWords(c.every, c.some, c.none, c.fixed); got != c.want {
 			t.Errorf("%s: %q, want %q", c.name, got, c.want)
 		}
 	}
@@ -212,5 +218,54 @@ func TestLeverKeepsWhatWasMet(t *testing.T) {
 		if keeps(before, product(finding("heat", rules.Met), finding("cool", v))) {
 			t.Errorf("the chilling is %s", v)
 		}
+	}
+}
+
+// A limit that no change bears on does not hide that a smaller size meets the others: a question without an answer, a row in error,
+// a length of a step. It is named in the same sentence.
+func TestLeverBesideLimitsThatNothingChanges(t *testing.T) {
+	minute := 60.0
+	spoilt := func(p *workbook.Product) { p.Size.DiameterM *= 1.9 }
+	duration := rules.Limit{Name: "Oven hour", Kind: rules.Duration, Stages: []*model.Stage{model.Cool}, TimeS: &minute, CompareTime: rules.AtMost}
+	for _, c := range []struct {
+		name  string
+		extra []rules.Limit
+		says  string
+	}{
+		{"unanswered", []rules.Limit{{Name: "Wrapped", Kind: rules.Stated}}, `; "Wrapped" cannot be judged until it is answered.`},
+		{"answered no", []rules.Limit{{Name: "Wrapped", Kind: rules.Stated, Answer: "no"}}, `; "Wrapped" stays not met as long as its answer stands.`},
+		{"row in error", []rules.Limit{{Name: "Typo", Kind: rules.CoolWithin, Unreadable: "To is no number"}}, `; "Typo" cannot be judged until its row is mended.`},
+		{"length of a step", []rules.Limit{duration}, `; "Oven hour" stays not met whatever of this is changed.`},
+		{"two unanswered and an error", []rules.Limit{{Name: "Wrapped", Kind: rules.Stated}, {Name: "Typo", Kind: rules.Hold, Unreadable: "x"}, {Name: "Lid", Kind: rules.Stated}},
+			`; "Wrapped" and "Lid" cannot be judged until they are answered; "Typo" cannot be judged until its row is mended.`},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			r, p := demoRunner(t, "Turkey roll")
+			spoilt(&p)
+			for i := range p.Steps { // of typed lengths, so that no size changes them
+				if p.Steps[i].Stage == model.Cool {
+					p.Steps[i].UntilC, p.Steps[i].DurationS = nil, 10*3600
+				}
+			}
+			alone := r.lever(&p, r.mustJudge(t, p))
+			plan := *r.plan
+			plan.Limits = slices.Clone(plan.Limits)
+			for _, l := range c.extra {
+				l.Applies.All = true
+				plan.Limits = append(plan.Limits, l)
+			}
+			r.plan = &plan
+			first, _, found := strings.Cut(alone, " would meet every limit in the model")
+			if !found {
+				t.Fatalf("%q: the case needs a lever", alone)
+			}
+			said := r.lever(&p, r.mustJudge(t, p))
+			if !strings.HasPrefix(said, first+" would meet every other limit in the model") || !strings.Contains(said, c.says) {
+				t.Errorf("%q, want %q … %q", said, first, c.says)
+			}
+			if len(r.plan.Limits) != len(plan.Limits) {
+				t.Error("the plan was changed")
+			}
+		})
 	}
 }
