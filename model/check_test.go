@@ -198,7 +198,7 @@ func TestUntil(t *testing.T) {
 // Properties from composition are taken at the mean of the coldest and hottest food of the step, what is above 100 °C counting as 100.
 func TestPropertiesAtTheMeanOfTheFood(t *testing.T) {
 	p, steps := plain()
-	p.Food.Composed = true
+	p.Food.Composed, p.Food.Waterless = true, true
 	p.Food.Props = func(c float64) Properties {
 		return Properties{KWmK: 0.46 + 0.0012*c, RhoKgM3: 1050 - 0.3*c, CJkgK: 3500 + 2*c}
 	}

@@ -286,7 +286,7 @@ func TestStatedErrorIsHonest(t *testing.T) {
 			for _, r := range []float64{0.01, 0.02, 0.04, 0.08, 0.15} {
 				for _, h := range []float64{5, 25, 100, 500, 3000, math.Inf(1)} {
 					axes := bodyAxes(shape, r)
-					p := Product{Shape: shape, StartC: 5, Food: &Material{Name: "test", Source: "input of the test", Props: func(float64) Properties { return testFood }},
+					p := Product{Shape: shape, StartC: 5, Food: &Material{Name: "test", Source: "input of the test", Props: func(float64) Properties { return testFood }, Waterless: true},
 						Size: Size{ThicknessM: 2 * r, DiameterM: 2 * r, WidthM: 2.4 * r, LengthM: 3.2 * r}}
 					e := Exposure{Surface: Film, FilmW: &h, Medium: Course{TimesS: []float64{0}, C: []float64{160}}}
 					if math.IsInf(h, 1) {
@@ -378,7 +378,7 @@ func TestStatedErrorIsHonestInTheNextStep(t *testing.T) {
 				film := func(w *float64, c float64) Exposure {
 					return Exposure{Surface: Film, FilmW: w, Medium: Course{TimesS: []float64{0}, C: []float64{c}}}
 				}
-				p := Product{Shape: shape, StartC: 5, Food: &Material{Name: "test", Source: "input of the test", Props: func(float64) Properties { return testFood }},
+				p := Product{Shape: shape, StartC: 5, Food: &Material{Name: "test", Source: "input of the test", Props: func(float64) Properties { return testFood }, Waterless: true},
 					Size: Size{ThicknessM: 2 * r, DiameterM: 2 * r}}
 				hist, err := Solve(p, []Step{{Stage: Cook, DurationS: 3000, Exposure: film(&h, 160)}, {Stage: Rest, DurationS: 600, Exposure: film(&rest, 22)},
 					{Stage: Cool, DurationS: 3000, Exposure: film(&chill, 2)}}, Options{})

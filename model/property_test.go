@@ -19,7 +19,7 @@ func drawnFood(t *rapid.T) (*model.Material, model.Properties) {
 		RhoKgM3: rapid.Float64Range(900, 1150).Draw(t, "rho"),
 		CJkgK:   rapid.Float64Range(2400, 4000).Draw(t, "c"),
 	}
-	return &model.Material{Name: "drawn", Source: "drawn at random by the test", Props: func(float64) model.Properties { return p }}, p
+	return &model.Material{Name: "drawn", Source: "drawn at random by the test", Props: func(float64) model.Properties { return p }, Waterless: true}, p
 }
 
 func constant(c float64) model.Course { return model.Course{TimesS: []float64{0}, C: []float64{c}} }
@@ -342,7 +342,7 @@ func over(a, b float64, n int, f func(x float64) float64) float64 {
 // The heat that passes the surface through the films is the heat that the food gains: ρcV·ΔT of the mean = ∫∫ h (Tm - Ts) dA dt.
 func TestHeatInIsHeatStored(t *testing.T) {
 	p := model.Properties{KWmK: 0.47, RhoKgM3: 1050, CJkgK: 3550}
-	f := &model.Material{Name: "test", Source: "input of the test", Props: func(float64) model.Properties { return p }}
+	f := &model.Material{Name: "test", Source: "input of the test", Props: func(float64) model.Properties { return p }, Waterless: true}
 	for _, c := range []struct {
 		shape *model.Shape
 		size  model.Size

@@ -20,7 +20,8 @@ const settleS = 30
 // or straight lines in time are integrated exactly, and the field is carried from step to step by projection. The only error is
 // that of the number of polynomials; it is estimated by solving again with fewer, and the number is raised until it is small.
 //
-// It fails with cell.Errors where Check finds something. A History is for one goroutine at a time.
+// It fails with cell.Errors where Check finds something, and where only the temperatures show what cannot be calculated: air that is
+// warmer than the food, food that is hotter than boiling water throughout. A History is for one goroutine at a time.
 func Solve(p Product, steps []Step, o Options) (*History, error) {
 	if found := Check(p, steps); found.Faults() > 0 {
 		return nil, found
@@ -38,6 +39,9 @@ func Solve(p Product, steps []Step, o Options) (*History, error) {
 		}
 		s.estimate(h, more)
 		if h.ErrorK <= goalK[s.used] || s.full(more) {
+			if s.boiling(h); len(s.refused) > 0 {
+				return nil, s.refused
+			}
 			return h, nil
 		}
 	}

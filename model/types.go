@@ -146,6 +146,7 @@ type Material struct {
 	FreezingC     *float64 // initial freezing point, °C
 	WaterActivity *float64
 	Flow          *Flow
+	Waterless     bool   // it holds no water, so that nothing in it boils; false: it does, or nobody knows
 	SetForm       string // of a food that flows: the built-in food that it is once it has set; "" if none is listed
 	Composition   string // in words, for the report: "water 71.7 %, protein 21.2 %, …"; "" if typed as properties
 }

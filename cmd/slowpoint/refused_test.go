@@ -43,3 +43,38 @@ func TestRefusedWhileCalculated(t *testing.T) {
 		t.Error("a report of a product that was not calculated")
 	}
 }
+
+// An oven of 350 °F typed in the °C column, for an hour: the centre of a solid slab would be at 128 °C. It is refused at its cell, with a
+// warning that no oven of a kitchen is so hot.
+func TestRefusedBeyondBoiling(t *testing.T) {
+	dir := filepath.Join(t.TempDir(), "plan")
+	writePlan(t, dir, map[string]string{
+		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nTray,A,slab,50,Mash,5\n",
+		"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Source\nMash,0.52,1040,3600,no,invented\n",
+		"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\nA,bake,cook,60,film,350,25\n",
+		"Limits":   "Limit,Rule,Stage,Applies to,From (°C),Time (min),Counting,Code,Clause,Edition\nhot,hold,cook,all,70,2,total,invented,1,1\n",
+	})
+	var out, errs bytes.Buffer
+	code := run([]string{"check", dir, "--date", "2026-01-31", "--no-pdf"}, nil, &out, &errs)
+	for _, want := range []string{"error: Steps!F2: \"350 °C\"", "beyond boiling", "warning: Steps!F2: \"350 °C\" is read as 350 °C, which is unusual"} {
+		if !strings.Contains(errs.String(), want) {
+			t.Errorf("%q is not in\n%s", want, errs.String())
+		}
+	}
+	if code != exitInput || !strings.Contains(out.String(), "NOT CALCULATED Tray") {
+		t.Errorf("exit %d\n%s", code, out.String())
+	}
+}
+
+// writePlan writes a folder of CSV files.
+func writePlan(t *testing.T, dir string, sheets map[string]string) {
+	t.Helper()
+	if err := os.MkdirAll(dir, 0o755); err != nil {
+		t.Fatal(err)
+	}
+	for name, text := range sheets {
+		if err := os.WriteFile(filepath.Join(dir, name+".csv"), []byte(text), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+}

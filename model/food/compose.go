@@ -129,6 +129,7 @@ func Compose(name, source string, c Composition) (model.Material, error) {
 		HighC:       HighC,
 		Composed:    true,
 		Composition: c.String(),
+		Waterless:   c.WaterPc == 0,
 	}, nil
 }
 

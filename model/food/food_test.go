@@ -351,3 +351,17 @@ func TestScaledSum(t *testing.T) {
 		t.Errorf("in words %q, want %q", m.Composition, want)
 	}
 }
+
+// What holds no water cannot boil: fat rendered and clarified is 100 % fat.
+func TestWaterless(t *testing.T) {
+	for _, v := range []struct {
+		name             string
+		waterPc, fatPc   float64
+		nothingThatBoils bool
+	}{{"clarified fat", 0, 100, true}, {"butter", 17, 83, false}} {
+		m, err := Compose(v.name, "made up", Composition{WaterPc: v.waterPc, FatPc: v.fatPc})
+		if err != nil || m.Waterless != v.nothingThatBoils {
+			t.Errorf("%s: %v, %v", v.name, m.Waterless, err)
+		}
+	}
+}

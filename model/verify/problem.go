@@ -40,10 +40,10 @@ func step(name string, durationS float64, e model.Exposure, faces ...model.FaceE
 }
 
 // material is a food of constant properties that are the input of a case. Freezing is none of the case's business: textbooks that chill
-// below a food's freezing point leave it out, so it is put out of reach.
+// below a food's freezing point leave it out, so it is put out of reach; so is boiling.
 func material(p model.Properties) *model.Material {
 	neverC := -100.0
-	return &model.Material{Name: "test input", Source: "input of the case", Props: func(float64) model.Properties { return p }, FreezingC: &neverC}
+	return &model.Material{Name: "test input", Source: "input of the case", Props: func(float64) model.Properties { return p }, FreezingC: &neverC, Waterless: true}
 }
 
 // history solves the problem.

@@ -66,7 +66,7 @@ type span struct{ least, most float64 }
 var (
 	usualSize, possibleSize         = &span{0.002, 1}, &span{1e-5, 10}              // m
 	usualStart, possibleStart       = &span{-30, 110}, &span{-273.15, 300}          // °C
-	usualMedium, possibleMedium     = &span{-60, 350}, &span{-273.15, 600}          // °C
+	usualMedium, possibleMedium     = &span{-60, 280}, &span{-273.15, 600}          // °C
 	usualLimit                      = &span{-273.15, 125}                           // °C
 	usualFilm, possibleFilm         = &span{0, 5000}, &span{0, 1e6}                 // W/(m²·K)
 	usualSpeed, possibleSpeed       = &span{0, 15}, &span{0, 100}                   // m/s

@@ -1,0 +1,97 @@
+package model
+
+import (
+	"fmt"
+	"math"
+
+	"slowpoint/model/cell"
+)
+
+// boilsK is by how much the coldest place of a food may pass the boiling point of water, K: dissolved salt and sugar raise it by a few
+// (common practice, no source). Beyond it the water inside boils off, which conduction does not describe.
+const boilsK = 5
+
+// boiling refuses a food that would be hotter than boiling water throughout. It looks at the ends of the steps, since the coldest place
+// warms all the time in surroundings that stay as they are, and between them where the surroundings change.
+func (s *solver) boiling(h *History) {
+	if s.product.Food.Waterless {
+		return
+	}
+	for i := range h.Spans {
+		sp := &h.Spans[i]
+		limit := boilingC(sp.Step.AltitudeM) + boilsK
+		if h.hull[i][1] <= limit {
+			continue
+		}
+		looks := 1
+		if len(s.chain[i].knots) > 1 {
+			looks = 16
+		}
+		for k := 1; k <= looks; k++ {
+			t := sp.StartS + (sp.EndS-sp.StartS)*float64(k)/float64(looks)
+			if lo, _ := h.body.range_(s.main.at(t)); lo <= limit {
+				continue
+			}
+			e := s.hotter(i, limit)
+			if low, _ := h.body.extremes(s.main.at(t)); e == nil || low.c <= limit {
+				continue
+			}
+			s.refused.Add(s.boilsOver(h, e, sp, t, limit))
+			return
+		}
+	}
+}
+
+// hotter gives the surroundings above a temperature, °C, that are the last before the end of a step and the hottest of theirs; nil if
+// there are none, so that the food only started so hot.
+func (s *solver) hotter(step int, limit float64) *Exposure {
+	for i := step; i >= 0; i-- {
+		var hottest *Exposure
+		most := limit
+		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
+			if !e.Surface.NoMedium && e.Medium.mostC() > most {
+				hottest, most = e, e.Medium.mostC()
+			}
+		}
+		if hottest != nil {
+			return hottest
+		}
+	}
+	return nil
+}
+
+// mostC is the highest temperature of a course, °C.
+func (m *Course) mostC() float64 {
+	most := math.Inf(-1)
+	for _, c := range m.C {
+		most = max(most, c)
+	}
+	return most
+}
+
+// boilsOver words the refusal: t is an instant in the span at which all of the food is above limit, °C.
+func (s *solver) boilsOver(h *History, e *Exposure, sp *Span, t, limit float64) cell.Error {
+	before, after := sp.StartS, t
+	for after-before > 1 {
+		mid := (before + after) / 2
+		if low, _ := h.body.extremes(s.main.at(mid)); low.c > limit {
+			after = mid
+		} else {
+			before = mid
+		}
+	}
+	low, _ := h.body.extremes(s.main.at(t))
+	field, typed := "Temperature", fmt.Sprintf("%g °C", e.Medium.mostC())
+	if e.Medium.Name != "" {
+		field, typed = "Course", e.Medium.Name
+	}
+	altitude := sp.Step.AltitudeM
+	place := s.product.Where(h.body.place(low.x))
+	msg := fmt.Sprintf("would heat %s beyond boiling throughout: even its coldest place (%s) passes %.1f °C %.0f min into the step %s and is at %.1f °C %.0f min into it, but water boils at %.1f °C at %g m above the sea, and food that holds water does not get hotter inside while it boils off; conduction without evaporation does not describe that",
+		s.product.Name, place, limit, (after-sp.StartS)/60, sp.Step.Name, low.c, (t-sp.StartS)/60, boilingC(altitude), altitude)
+	hint := "look at the temperature and its unit (°F typed in a °C column?), or shorten the step"
+	if e.Surface == Steam {
+		hint += "; steam under pressure is outside this program"
+	}
+	return cell.Error{At: e.At, Field: field, Typed: typed, Msg: msg, Hint: hint}
+}
