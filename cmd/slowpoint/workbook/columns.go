@@ -67,6 +67,7 @@ var (
 	usualSize, possibleSize         = &span{0.002, 1}, &span{1e-5, 10}              // m
 	usualStart, possibleStart       = &span{-30, 110}, &span{-80, 125}               // °C
 	usualMedium, possibleMedium     = &span{-60, 280}, &span{-273.15, 600}          // °C
+	usualFreezing, possibleFreezing = &span{-6, 0}, &span{-60, 0.5}                 // °C
 	usualLimit                      = &span{-273.15, 125}                           // °C
 	usualFilm, possibleFilm         = &span{0, 5000}, &span{0, 1e6}                 // W/(m²·K)
 	usualSpeed, possibleSpeed       = &span{0, 15}, &span{0, 100}                   // m/s
@@ -80,6 +81,7 @@ var (
 const (
 	slipSize    = "is it cm or inches typed in a mm column, or the other way round?"
 	slipDegrees = "is it °F typed in a °C column?"
+	slipFreezer = "is it the temperature of a freezer, or °F typed in a °C column?"
 	slipFilm    = "is it in another unit than the heading says, such as kW/m²·K?"
 	slipSpeed   = "is it ft/min or km/h typed in a m/s column?"
 	slipTime    = "is it seconds or minutes typed in a column of longer units?"
@@ -243,7 +245,7 @@ var Sheets = []*Sheet{
 		{Heading: "Conductivity", Quantity: &unit.Conductivity, Unit: "W/m·K", Usual: usualConduct, Possible: possibleConduct, Slip: slipConduct, Least: Positive, Help: "thermal conductivity, instead of a composition, with Density and Specific heat"},
 		{Heading: "Density", Quantity: &unit.Density, Unit: "kg/m³", Usual: usualDensity, Possible: possibleDensity, Slip: slipDensity, Least: Positive, Help: "of the whole food with its air; measured"},
 		{Heading: "Specific heat", Quantity: &unit.SpecificHeat, Unit: "J/kg·K", Usual: usualSpecific, Possible: possibleSpecific, Slip: slipHeat, Least: Positive, Help: "instead of a composition, with Conductivity and Density"},
-		{Heading: "Freezing point", Quantity: &unit.Temperature, Unit: "°C", Help: "where ice begins to form; needed where food gets near 0 °C"},
+		{Heading: "Freezing point", Quantity: &unit.Temperature, Unit: "°C", Usual: usualFreezing, Possible: possibleFreezing, Slip: slipFreezer, Help: "where ice begins to form; needed where food gets near 0 °C"},
 		{Heading: "Water activity", Quantity: &unit.Number, Least: UpToOne, Help: "more than 0 and at most 1; kept for wet surfaces"},
 		{Heading: "Flows", Choices: flowNames, Help: "a liquid left still is not conduction; blank = no"},
 		{Heading: "Source", Needed: true, Help: "where the figures come from"},
