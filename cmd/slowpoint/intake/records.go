@@ -20,6 +20,7 @@ type importer struct {
 	done     int              // records
 	products map[string]Place // where each product is
 	made     map[string]int   // index in Result.Made of rows that several records may make
+	fresh    []string         // keys of made that the record at hand added
 	labels   map[*workbook.Grid]string
 
 	// of the source at hand
@@ -582,13 +583,17 @@ func (im *importer) rows(o *opened, rec record, from int) {
 		}()
 	}
 	was := len(im.r.Made)
+	im.fresh = im.fresh[:0]
 	for k, t := range o.src.rows {
 		if im.makes(o, k) {
 			im.make(o, rec, t)
 		}
 	}
-	if len(im.r.Not) > from {
+	if len(im.r.Not) > from { // taken back, so that a later record may make them
 		im.r.Made = im.r.Made[:was]
+		for _, key := range im.fresh {
+			delete(im.made, key)
+		}
 	}
 }
 
@@ -721,6 +726,7 @@ func (im *importer) make(o *opened, rec record, t *target) {
 			return
 		}
 		im.made[key] = len(im.r.Made)
+		im.fresh = append(im.fresh, key)
 	}
 	im.r.Made = append(im.r.Made, Made{Sheet: t.sheet, Part: t.part, Record: rec.at, Values: values})
 }

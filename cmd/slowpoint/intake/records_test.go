@@ -298,6 +298,26 @@ func TestSharedProcess(t *testing.T) {
 	}
 }
 
+// TestSharedProcessTakenBack: rows of a record that is refused for a later one of its rows are not there for the records after it, which
+// make them themselves.
+func TestSharedProcessTakenBack(t *testing.T) {
+	text := strings.Replace(dishMap, "S | Tin | Products", "S | Way | Products | Process | | | | yes\nS | Chill | Steps | Duration | chill | min | | yes\nS | Tin | Products", 1)
+	text = strings.Replace(text, "S | Steps | Stage | cook | cook |", "S | Steps | Stage | cook | cook |\nS | Steps | Temperature | chill | 3 °C |\nS | Steps | Surroundings | chill | film |\nS | Steps | Film coefficient | chill | 18 W/m²·K |\nS | Steps | Stage | chill | chill |", 1)
+	grid := `Dish | Tin | Start | Oven (°C) | Cook | Chill | Way
+Mash | low | 5 | | | 90 | W
+Hash | round | 6 | 160 | 45 | 95 | W
+Pie | low | 7 | 165 | 50 | 90 | W`
+	r := mappingOf(text).Import([]*workbook.Spreadsheet{fileOf("S.xlsx", gridOf("L", grid))})
+	got := map[string]string{} // the row of theirs that each row is made of, by product or step
+	for _, m := range r.Made {
+		got[strings.TrimSpace(m.Sheet.Name+" "+m.Part)+" "+m.Values[0].Text] += m.Record.short() + ";"
+	}
+	want := map[string]string{"Products Mash": "row 2;", "Products Pie": "row 4;", "Steps chill W": "row 2;", "Steps cook W": "row 4;"}
+	if diff := cmp.Diff(want, got); diff != "" || len(r.Not) != 1 || r.Not[0].At.short() != "F3" {
+		t.Errorf("made (-want +got):\n%s\nnot: %+v\n%s", diff, r.Not, problemLines(r))
+	}
+}
+
 // addUp holds that the counts add up, and that each record is in exactly one place: imported, left out, not imported.
 func addUp(t interface {
 	Helper()
