@@ -126,6 +126,7 @@ func (c *checker) food() {
 			"keep one row, at the middle of the temperatures that matter, on the slow side")
 	}
 	if p.Shape == Stirred {
+		c.mixes()
 		return
 	}
 	switch f.Flow {
@@ -138,6 +139,22 @@ func (c *checker) food() {
 		c.add(p.At, "Start temperature", fmt.Sprintf("%g °C", p.StartC), "the food starts frozen, and melting cannot be calculated yet",
 			"judge a probe record, or start from the thawed food")
 	}
+}
+
+// mixes warns of a solid food that is taken as stirred: one temperature for a food that heat has to cross is too fast, on the unsafe side,
+// but for pieces so small that their Biot number is below about 0.1 (textbooks of heat transfer, such as Çengel; from memory).
+func (c *checker) mixes() {
+	p := c.product
+	if p.Food.Flow != FlowsNo {
+		return
+	}
+	known := "by the answer no in the column Flows"
+	if p.Food.At.IsZero() {
+		known = "as a built-in food"
+	}
+	c.found.Add(cell.Error{At: p.At, Level: cell.Warning, Field: "Shape", Typed: Stirred.Name,
+		Msg:  fmt.Sprintf("gives all of the food one temperature, but %s is solid or set (%s): the inside of a piece lags behind what is shown, in heating and in chilling", p.Food.Name, known),
+		Hint: "choose the shape of the piece, with its sizes; if it is thin enough to be stirred all the time, say so by thick or yes in the column Flows of a row of Foods"})
 }
 
 func (c *checker) points() {

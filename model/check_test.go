@@ -315,3 +315,42 @@ func TestInsulatedAndStirred(t *testing.T) {
 		t.Errorf("%g °C, exact %g", got, want)
 	}
 }
+
+// A solid food taken as stirred is warned of and calculated; what flows is not, nor is a solid food as a slab.
+func TestCheckWarnsOfAStirredSolid(t *testing.T) {
+	for _, v := range []struct {
+		name  string
+		shape *Shape
+		flow  *Flow
+		built bool
+		says  string
+	}{
+		{"a solid food of the plan", Stirred, FlowsNo, false, "mash is solid or set (by the answer no in the column Flows)"},
+		{"a built-in solid food", Stirred, FlowsNo, true, "mash is solid or set (as a built-in food)"},
+		{"thick", Stirred, FlowsThick, false, ""},
+		{"a liquid", Stirred, FlowsYes, false, ""},
+		{"a solid slab", Slab, FlowsNo, false, ""},
+	} {
+		t.Run(v.name, func(t *testing.T) {
+			p, steps := plain()
+			p.Shape, p.Size, p.Food.Flow = v.shape, Size{ThicknessM: 0.043, VolumeM3: 0.015, AreaM2: 0.32}, v.flow
+			if v.built {
+				p.Food.At = cell.Ref{}
+			}
+			found := Check(p, steps)
+			if v.says == "" {
+				if len(found) > 0 {
+					t.Error(found)
+				}
+				return
+			}
+			if len(found) != 1 || found[0].Level != cell.Warning || found[0].At != p.At || found[0].Field != "Shape" || !strings.Contains(found[0].Msg, v.says) {
+				t.Errorf("%v", found)
+			}
+			steps[0].Medium.C[0] = 97
+			if _, err := Solve(p, steps, Options{}); err != nil {
+				t.Error(err)
+			}
+		})
+	}
+}

@@ -65,7 +65,7 @@ type span struct{ least, most float64 }
 // of another heading.
 var (
 	usualSize, possibleSize         = &span{0.002, 1}, &span{1e-5, 10}              // m
-	usualStart, possibleStart       = &span{-30, 110}, &span{-80, 125}               // °C
+	usualStart, possibleStart       = &span{-30, 110}, &span{-80, 125}              // °C
 	usualMedium, possibleMedium     = &span{-60, 280}, &span{-273.15, 600}          // °C
 	usualFreezing, possibleFreezing = &span{-6, 0}, &span{-60, 0.5}                 // °C
 	usualLimit                      = &span{-273.15, 125}                           // °C
