@@ -38,6 +38,25 @@ func ColumnName(col int) string {
 	return name
 }
 
+// ColumnNumber turns A, B, … AA into 1, 2, … 27, in small letters too; 0 for anything else, and for more letters than any spreadsheet has.
+func ColumnNumber(name string) int {
+	if len(name) > 3 {
+		return 0
+	}
+	n := 0
+	for _, c := range name {
+		switch {
+		case c >= 'A' && c <= 'Z':
+			n = 26*n + int(c-'A') + 1
+		case c >= 'a' && c <= 'z':
+			n = 26*n + int(c-'a') + 1
+		default:
+			return 0
+		}
+	}
+	return n
+}
+
 // Level says how much a problem weighs.
 type Level int
 

@@ -13,8 +13,6 @@ import (
 
 // Mapping says which of their cells go where in a plan.
 type Mapping struct {
-	Progress func(done, total int) // records; may be nil
-
 	t        *workbook.Tables
 	sources  []*source
 	lists    map[string]*wordList // by key
@@ -46,13 +44,12 @@ type source struct {
 
 // where is a place of their records, as the mapping names it.
 type where struct {
-	kind    whereKind
-	text    string // as typed
-	key     string // of a heading or label, made comparable
-	at      cell.Ref
-	columns string // the sheet of the mapping that names it first
-	col     int    // a column, if it is given by its letter
-	row     int    // a row, if it is given by its number: absolute or, in blocks, below the start
+	kind whereKind
+	text string // as typed
+	key  string // of a heading or label, made comparable
+	at   cell.Ref
+	col  int // a column, if it is given by its letter
+	row  int // a row, if it is given by its number: absolute or, in blocks, below the start
 }
 
 type whereKind uint8
@@ -222,7 +219,7 @@ func (m *Mapping) readSources() {
 	}
 }
 
-var range2 = regexp.MustCompile(`^([0-9]+|[A-Za-z]+)(?: ?[-–:] ?([0-9]+|[A-Za-z]+))?$`)
+var headRange = regexp.MustCompile(`^([0-9]+|[A-Za-z]+)(?: ?[-–:] ?([0-9]+|[A-Za-z]+))?$`)
 
 // readHeads reads where a source's headings and data are.
 func (m *Mapping) readHeads(s *source) {
@@ -238,7 +235,7 @@ func (m *Mapping) readHeads(s *source) {
 	case blockLayout:
 		s.word = workbook.Key(typed)
 	default:
-		parts := range2.FindStringSubmatch(typed)
+		parts := headRange.FindStringSubmatch(typed)
 		if parts == nil {
 			m.blame(s, s.line, "Heading", typed, headWrong[s.layout])
 			break
@@ -275,25 +272,18 @@ func (s *source) number(w string) int {
 		return letters(w)
 	}
 	n, err := strconv.Atoi(w)
-	if err != nil || n < 1 || n > 1_048_576 {
+	if err != nil || n < 1 || n > workbook.LastRow {
 		return 0
 	}
 	return n
 }
 
-// letters reads the letters of a column; 0 if they are none.
+// letters reads the letters of a column that a spreadsheet has; 0 if they are none.
 func letters(w string) int {
-	n := 0
-	for _, c := range strings.ToUpper(w) {
-		if c < 'A' || c > 'Z' || n > 16384 {
-			return 0
-		}
-		n = n*26 + int(c-'A') + 1
+	if n := cell.ColumnNumber(w); n <= workbook.LastColumn {
+		return n
 	}
-	if n > 16384 {
-		return 0
-	}
-	return n
+	return 0
 }
 
 // sourceOf finds the source that a row names; the fault is told.
@@ -354,12 +344,7 @@ func placed(sheetName, columnName string) (*workbook.Sheet, int, string, *mispla
 		}
 		return nil, 0, "", &misplaced{"Column", columnName, columnWrong, []string{sheet.Name, workbook.Meant(name, known), strings.Join(known, ", ")}}
 	}
-	for i, k := range sheet.Columns {
-		if k == c {
-			return sheet, i, inside, nil
-		}
-	}
-	panic("unreachable: a known column is one of its sheet")
+	return sheet, slices.Index(sheet.Columns, c), inside, nil
 }
 
 // mayNames are the sheets of a plan that records may make rows of.
@@ -652,7 +637,7 @@ func (w *where) numbers(layout string) bool {
 	case columnLayout:
 		if p := numberOnly.FindStringSubmatch(w.text); p != nil {
 			w.row, _ = strconv.Atoi(p[1])
-			return w.row > 0 && w.row <= 1_048_576
+			return w.row > 0 && w.row <= workbook.LastRow
 		}
 	case blockLayout:
 		p := offset.FindStringSubmatch(w.text)
@@ -665,12 +650,12 @@ func (w *where) numbers(layout string) bool {
 		}
 		w.col = letters(p[1])
 		w.row, _ = strconv.Atoi(p[3])
-		return w.col > 0 && (p[2] == "+" || w.row == 0) && w.row <= 1_048_576
+		return w.col > 0 && (p[2] == "+" || w.row == 0) && w.row <= workbook.LastRow
 	case sheetLayout:
 		if p := address.FindStringSubmatch(w.text); p != nil {
 			w.col = letters(p[1])
 			w.row, _ = strconv.Atoi(p[2])
-			return w.col > 0 && w.row > 0 && w.row <= 1_048_576
+			return w.col > 0 && w.row > 0 && w.row <= workbook.LastRow
 		}
 	}
 	return false

@@ -2,6 +2,7 @@ package intake
 
 import (
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -17,7 +18,6 @@ type importer struct {
 	r        *Result
 	opened   [][]*opened // of each source, in the order of the files
 	problems cell.Errors
-	done     int              // records
 	products map[string]Place // where each product is
 	made     map[string]int   // index in Result.Made of rows that several records may make
 	fresh    []string         // keys of made that the record at hand added
@@ -31,7 +31,7 @@ type importer struct {
 }
 
 // Import makes the rows of a plan of their spreadsheets. Everything that is wrong is told in the result; if the mapping itself cannot be
-// trusted, nothing is made. Progress is told now and then.
+// trusted, nothing is made.
 func (m *Mapping) Import(files []*workbook.Spreadsheet) *Result {
 	r := &Result{Mapping: m.t.Name, SHA256: m.t.SHA256, Copied: m.copied}
 	for _, f := range files {
@@ -43,25 +43,16 @@ func (m *Mapping) Import(files []*workbook.Spreadsheet) *Result {
 		return r
 	}
 	im.find()
-	for range m.sources {
-		r.Counts = append(r.Counts, Count{})
+	for _, s := range m.sources {
+		r.Counts = append(r.Counts, Count{Source: s.name})
 	}
-	for i, s := range m.sources {
-		r.Counts[i].Source = s.name
-	}
-	total := im.total()
 	for f := range files {
 		im.decimals(f)
 		for i, s := range m.sources {
 			im.begin(s)
 			for _, o := range im.opened[i] {
 				if o.file == f {
-					o.each(func(rec record) {
-						im.record(o, rec, &r.Counts[i])
-						if im.done++; m.Progress != nil && im.done%500 == 0 {
-							m.Progress(im.done, max(total, im.done))
-						}
-					})
+					o.each(func(rec record) { im.record(o, rec, &r.Counts[i]) })
 					o.tell()
 				}
 			}
@@ -70,19 +61,6 @@ func (m *Mapping) Import(files []*workbook.Spreadsheet) *Result {
 	im.unusedWords()
 	r.Problems = im.everything()
 	return r
-}
-
-// total is about how many records there are.
-func (im *importer) total() int {
-	n := 0
-	for _, list := range im.opened {
-		for _, o := range list {
-			if o.src.layout == rowLayout {
-				n += max(0, len(o.grid.Rows)-o.src.heads[1])
-			}
-		}
-	}
-	return n
 }
 
 // everything is what is wrong with the mapping and with their files, in order.
@@ -417,9 +395,9 @@ func (o *opened) usable(im *importer, rec record, i int, f *found, at Place, c *
 	}
 	switch {
 	case f.e.Linked:
-		o.count(1, o.src.mapped[i].where, o.ref(f.row, f.col), "", "")
+		o.count(linkedCells, o.src.mapped[i].where, o.ref(f.row, f.col), "", "")
 	case f.e.Formula && f.e.Kind != workbook.NoStored:
-		o.count(0, o.src.mapped[i].where, o.ref(f.row, f.col), "", "")
+		o.count(formulaCells, o.src.mapped[i].where, o.ref(f.row, f.col), "", "")
 	}
 	if f.row == 0 || o.src.layout == rowLayout || o.src.layout == columnLayout {
 		return true
@@ -453,7 +431,7 @@ func (im *importer) take(o *opened, rec record, i int, m *mapped, f *found, at P
 		return
 	}
 	if o.shown != "" && f.e.Kind == workbook.Text && c.Quantity != nil && strings.ContainsAny(f.e.Text, ".,") && unit.Ambiguous(f.e.Text) {
-		o.count(2, m.where, place, f.e.Text, strconv.FormatFloat(t.Value.Computed, 'g', 7, 64)+" "+c.Quantity.Units[0].Name())
+		o.count(signedCells, m.where, place, f.e.Text, strconv.FormatFloat(t.Value.Computed, 'g', 7, 64)+" "+c.Quantity.Units[0].Name())
 	}
 	v := Value{Column: c, At: at}
 	v.set(f.e, t, h.unit, o.decimal, false)
@@ -654,7 +632,7 @@ func (im *importer) told(rec record, c *workbook.Column, t *target) bool {
 
 // missing tells of a needed cell that is blank.
 func (im *importer) missing(o *opened, rec record, p *filler, c *workbook.Column) {
-	_, mend := c.Missing()
+	mend := c.Missing()
 	switch {
 	case p != nil && p.mapped != nil:
 		f := &o.cells[p.mapped.where]
@@ -693,9 +671,6 @@ func (im *importer) standIn(o *opened, t *target, c *workbook.Column) (Value, bo
 	return im.values[p.from], im.filled[p.from]
 }
 
-// sameRow are the columns that tell one row of a sheet from another.
-var sameRow = map[string][]string{"Steps": {"Process", "Product", "Step"}, "Faces": {"Process", "Product", "Step", "Face"}, "Points": {"Product", "Point"}}
-
 // make makes a row. A row that an earlier record made too is made once.
 func (im *importer) make(o *opened, rec record, t *target) {
 	n := 0
@@ -710,11 +685,11 @@ func (im *importer) make(o *opened, rec record, t *target) {
 			values = append(values, im.values[t.from+i])
 		}
 	}
-	if same := sameRow[t.sheet.Name]; same != nil {
+	if same := keys[t.sheet.Name]; same != nil && t.sheet.Name != "Products" { // of products there is one of a name, see rows
 		key := im.keyOf(t, same)
 		if before, known := im.made[key]; known {
 			if c := differs(im.r.Made[before].Values, values); c != nil {
-				i := columnIndex(t.sheet, c)
+				i := slices.Index(t.sheet.Columns, c)
 				at, typed := rec.at, ""
 				if im.filled[t.from+i] {
 					if v := &im.values[t.from+i]; v.At.Row > 0 {
@@ -729,15 +704,6 @@ func (im *importer) make(o *opened, rec record, t *target) {
 		im.fresh = append(im.fresh, key)
 	}
 	im.r.Made = append(im.r.Made, Made{Sheet: t.sheet, Part: t.part, Record: rec.at, Values: values})
-}
-
-func columnIndex(s *workbook.Sheet, c *workbook.Column) int {
-	for i, k := range s.Columns {
-		if k == c {
-			return i
-		}
-	}
-	return 0
 }
 
 // keyOf joins what tells a row from another.
@@ -784,14 +750,10 @@ func differs(a, b []Value) *workbook.Column {
 
 // where words a place of theirs.
 func (im *importer) where(p Place) string {
-	name := im.files[p.File].Name
-	if p.Sheet != "" {
-		name += " › " + p.Sheet
+	if p.Row == 0 && p.Col > 0 { // a whole column, which no cell.Ref tells
+		return im.r.Where(p)
 	}
-	if p.Row == 0 && p.Col > 0 {
-		return name + " column " + cell.ColumnName(p.Col)
-	}
-	return cell.Ref{Sheet: name, Row: p.Row, Col: p.Col}.String()
+	return im.r.Ref(p).String()
 }
 
 // count counts a cell of which one thing is told once a column.
@@ -804,7 +766,7 @@ func (o *opened) count(what, where int, at cell.Ref, typed, used string) {
 
 // tell tells what was counted.
 func (o *opened) tell() {
-	for what, s := range []saying{formulasUsed, linksUsed, byEvidence} {
+	for what, s := range [...]saying{formulaCells: formulasUsed, linkedCells: linksUsed, signedCells: byEvidence} {
 		for i := range o.tallies[what] {
 			t := &o.tallies[what][i]
 			if t.n == 0 {
@@ -815,7 +777,7 @@ func (o *opened) tell() {
 				more = fmt.Sprintf(" and %d more of its column hold", t.n-1)
 			}
 			args := []string{more}
-			if what == 2 {
+			if what == signedCells {
 				if more = ""; t.n > 1 {
 					more = fmt.Sprintf("; so are %d more of its column", t.n-1)
 				}

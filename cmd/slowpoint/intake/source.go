@@ -33,7 +33,7 @@ type opened struct {
 	row       *workbook.Row     // rows: the row at hand
 	from      int               // first row (blocks, sheet) or the column (columns) of the record at hand
 	to        int               // its last row
-	tallies   [3][]tally        // of each where: formulas, links, signs by evidence
+	tallies   [tallies][]tally  // of each where
 	fileName  workbook.Entry    // the file's name
 	sheetName workbook.Entry    // the sheet's name
 }
@@ -67,6 +67,14 @@ type found struct {
 }
 
 var blank workbook.Entry
+
+// What is told once a column, of all its cells together.
+const (
+	formulaCells = iota // hold a formula
+	linkedCells         // hold a formula that takes something from another workbook
+	signedCells         // are read by the decimal sign that the file shows
+	tallies             // how many there are
+)
 
 // tally counts cells of a column of which one thing is told once.
 type tally struct {

@@ -1,6 +1,7 @@
 package intake
 
 import (
+	"slices"
 	"strconv"
 	"strings"
 
@@ -135,10 +136,5 @@ var sure = map[string]bool{"°C": true, "ºC": true, "℃": true, "°F": true, "
 
 // otherQuantity tells whether a word is a unit of anything else than a quantity.
 func otherQuantity(q *unit.Quantity, word string) bool {
-	for _, other := range []*unit.Quantity{&unit.Temperature, &unit.Length, &unit.Duration, &unit.Volume, &unit.Area, &unit.Film, &unit.Speed, &unit.Conductivity, &unit.Density, &unit.SpecificHeat, &unit.Percent} {
-		if other != q && other.Unit(word) != nil {
-			return true
-		}
-	}
-	return false
+	return slices.ContainsFunc(quantities, func(other *unit.Quantity) bool { return other != q && other.Unit(word) != nil })
 }

@@ -23,7 +23,12 @@ const (
 	mostBytes   = 256 << 20 // of a plan, unzipped
 	mostCells   = 3_000_000 // of a plan
 	mostText    = 32_767    // characters of a cell, as in spreadsheets
-	lastRow     = 1_048_576 // of a spreadsheet
+)
+
+// The last row and column of a spreadsheet (of current programs: common practice, no source).
+const (
+	LastRow    = 1_048_576
+	LastColumn = 16_384
 )
 
 // readFolder reads the sheets of a folder.

@@ -374,7 +374,7 @@ func placeOf(s string) (place, bool) {
 	if m == nil {
 		return place{}, false
 	}
-	p := place{col: columnNumber(m[1])}
+	p := place{col: int32(cell.ColumnNumber(m[1]))}
 	n, _ := strconv.Atoi(m[3]) // "" is 0
 	p.row = int32(n)
 	switch {
@@ -390,15 +390,6 @@ func placeOf(s string) (place, bool) {
 		return place{}, false
 	}
 	return p, true
-}
-
-// columnNumber turns A, B, … AA into 1, 2, … 27; 0 for "".
-func columnNumber(letters string) int32 {
-	n := int32(0)
-	for _, c := range strings.ToUpper(letters) {
-		n = n*26 + c - 'A' + 1
-	}
-	return n
 }
 
 // anchor reads the column #From of a sheet of the plan.
@@ -465,7 +456,7 @@ func (o *origins) read(s string) (a anchor, sum string, ok bool) {
 			continue
 		}
 		row, _ := strconv.Atoi(tail[1]) // "" is 0
-		a = anchor{label: label, part: -1, row: int32(row), col: columnNumber(tail[2])}
+		a = anchor{label: label, part: -1, row: int32(row), col: int32(cell.ColumnNumber(tail[2]))}
 		if n, known := o.parts[tail[3]]; known {
 			a.part = n
 		}

@@ -477,7 +477,7 @@ func (l *Line) broken(heading string, e *Entry) bool {
 // refuse tells of a cell that its column does not take.
 func (l *Line) refuse(heading string, no *refusal) { l.Fault(heading, no.typed, no.s, no.args...) }
 
-// Words reads a cell as Words; "" for a blank. A needed blank is a fault.
+// Words reads a cell as words; "" for a blank. A needed blank is a fault.
 func (l *Line) Words(heading string) string {
 	c, e := l.t.sheet.Column(heading), l.Entry(heading)
 	if e.Kind == Blank {
@@ -557,7 +557,7 @@ func (l *Line) Number(heading string) *float64 {
 	return &v.Computed
 }
 
-// Value is number with the text as typed.
+// Value is Number with the text as typed.
 func (l *Line) Value(heading string) *unit.Value {
 	c, e := l.t.sheet.Column(heading), l.Entry(heading)
 	if e.Kind == Blank {

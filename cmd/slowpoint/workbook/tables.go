@@ -60,9 +60,6 @@ func (t *Tables) Grid(sheet string) *Grid { return t.r.grids[sheet] }
 // Sheets are the sheets in the order of the workbook, by the names that the user gave.
 func (t *Tables) Sheets() []string { return t.r.plan.Sheets }
 
-// Add adds a problem found by whoever uses the tables.
-func (t *Tables) Add(e cell.Error) { t.r.add(e) }
-
 // Problems is everything that is wrong so far, in workbook order.
 func (t *Tables) Problems() cell.Errors {
 	found := once(t.r.problems)

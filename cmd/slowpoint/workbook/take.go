@@ -56,9 +56,7 @@ func (c *Column) Take(e *Entry, u Under) (Taken, *cell.Error) {
 func Meant(word string, known []string) string { return meant(word, known) }
 
 // Missing tells how to fill a needed cell.
-func (c *Column) Missing() (why, mend string) {
-	return fill(missing.msg, []string{c.Heading}), mendMissing(c)
-}
+func (c *Column) Missing() string { return mendMissing(c) }
 
 // Known finds a column by its heading without unit, in any writing; nil if there is none.
 func (s *Sheet) Known(heading string) *Column { return s.known(Key(heading)) }

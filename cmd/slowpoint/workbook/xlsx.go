@@ -12,6 +12,8 @@ import (
 	"strconv"
 	"strings"
 	"time"
+
+	"slowpoint/model/cell"
 )
 
 // The parts of a workbook are read here and not by excelize, which gives a shortened sheet without an error where a part is damaged,
@@ -528,7 +530,7 @@ func startRow(e xml.StartElement, before int) (Row, error) {
 		}
 		n = v
 	}
-	if n > lastRow {
+	if n > LastRow {
 		return Row{}, fmt.Errorf("row %d does not exist in a spreadsheet", n)
 	}
 	hidden := attr(e, "hidden") == "1" || attr(e, "hidden") == "true"
@@ -561,16 +563,10 @@ func column(name string, row, before int) (int, error) {
 
 // parseName reads the name of a cell: AB12.
 func parseName(name string) (col, row int, ok bool) {
-	i := 0
-	for ; i < len(name) && i < 4; i++ {
-		c := name[i] | 0x20
-		if c < 'a' || c > 'z' {
-			break
-		}
-		col = col*26 + int(c-'a') + 1
-	}
-	row, err := strconv.Atoi(name[i:])
-	return col, row, err == nil && i > 0 && i < 4 && row > 0 && name[i] != '+' && col <= 16384
+	letters := strings.TrimRight(name, "0123456789")
+	col = cell.ColumnNumber(letters)
+	row, err := strconv.Atoi(name[len(letters):])
+	return col, row, err == nil && row > 0 && col > 0 && col <= LastColumn
 }
 
 func parseBlock(ref string) (Block, bool) {
