@@ -254,6 +254,7 @@ func (ls *limits) read(l *Line) {
 	ls.stages(l, &lim, sc)
 	ls.where(l, &lim, sc)
 	numbers(l, &lim)
+	sc.likely(l, &lim)
 	lim.Clock = clockOf(l, &lim)
 	for _, s := range []*model.Stage{lim.Clock.Start, lim.Clock.End} {
 		if sc.nowhere(s) {

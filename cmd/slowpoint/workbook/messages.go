@@ -149,6 +149,7 @@ var (
 	groupUnknown   = saying{"is not a group of any limit or row of Groups{1}", "correct the name"}
 	groupCycle     = saying{"lies within itself by way of {1}", "let groups lie within each other in one direction only"}
 	groupDeep      = saying{"lies more than {1} groups deep", "let groups lie within each other less deep"}
+	unusualLimit   = saying{"is read as {1}, which is unusual for the rule {2}{3}: usual is {4}", "check the number and its unit: {5}"}
 	groupEmpty     = saying{"is a group that no limit and no other group belongs to", "name it in the column Group of Limits, or take the row out"}
 )
 
