@@ -2,6 +2,7 @@ package intake
 
 import (
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -169,15 +170,17 @@ func (o *opened) headLines() (last int) {
 	return last
 }
 
-// headings finds the line of every where that is named by its heading.
-func (o *opened) headings() {
+// headIndex are the headings of a sheet.
+type headIndex struct {
+	texts        map[int]string   // by line, group and heading joined by ›
+	known        []string         // the same, in order
+	exact, loose map[string][]int // lines by the key of the whole, and of it without its unit or its group
+}
+
+// index reads the headings of a sheet.
+func (o *opened) index() headIndex {
 	src := o.src
-	if src.heads[0] == 0 { // the mapping is at fault, which was told
-		return
-	}
-	exact, loose := map[string][]int{}, map[string][]int{}
-	var known []string
-	texts := map[int]string{}
+	x := headIndex{texts: map[int]string{}, exact: map[string][]int{}, loose: map[string][]int{}}
 	last := o.headLines()
 	for line := 1; line <= last; line++ {
 		if src.layout == columnLayout && o.grid.Row(line) == nil {
@@ -199,47 +202,39 @@ func (o *opened) headings() {
 			full = group
 		case group != "":
 			full = group + " › " + name
-			loose[headingKey(name)] = append(loose[headingKey(name)], line)
+			x.loose[headingKey(name)] = append(x.loose[headingKey(name)], line)
 		}
 		o.width = line
-		texts[line] = full
-		known = append(known, full)
-		exact[headingKey(full)] = append(exact[headingKey(full)], line)
+		x.texts[line] = full
+		x.known = append(x.known, full)
+		x.exact[headingKey(full)] = append(x.exact[headingKey(full)], line)
 		if bare, in := workbook.SplitHeading(full); in != "" {
-			loose[headingKey(bare)] = append(loose[headingKey(bare)], line)
+			x.loose[headingKey(bare)] = append(x.loose[headingKey(bare)], line)
 		}
 	}
-	if len(known) == 0 {
-		for _, w := range src.wheres {
-			if w.kind == byName {
-				o.refuse(headRowBlank.problem(cell.Ref{Sheet: o.label}, cell.Fault, "", "", o.headPlace(), src.line.At("Heading").String()))
-				return
-			}
-		}
+	return x
+}
+
+// headings finds the line of every where that is named by its heading.
+func (o *opened) headings() {
+	src := o.src
+	if src.heads[0] == 0 { // the mapping is at fault, which was told
+		return
+	}
+	x := o.index()
+	if len(x.known) == 0 && slices.ContainsFunc(src.wheres, func(w *where) bool { return w.kind == byName }) {
+		o.refuse(headRowBlank.problem(cell.Ref{Sheet: o.label}, cell.Fault, "", "", o.headPlace(), src.line.At("Heading").String()))
+		return
 	}
 	for i, w := range src.wheres {
 		switch w.kind {
 		case byNumber:
 			o.lines[i] = w.col + w.row
 		case byName:
-			lines := exact[w.key]
-			if len(lines) == 0 {
-				lines = loose[w.key]
-			}
-			if len(lines) == 0 {
-				o.refuse(headUnknown.problem(w.at, cell.Fault, "", w.text, o.label, workbook.Meant(w.text, known), example[src.layout]))
-				continue
-			}
-			if len(lines) > 1 {
-				o.refuse(headTwice.problem(w.at, cell.Fault, "", w.text, o.label, o.named(lines), "="+o.lineName(lines[0])))
-				continue
-			}
-			o.lines[i] = lines[0]
-		default:
-			continue
+			o.lines[i] = o.lineOf(w, x)
 		}
 		if line := o.lines[i]; line > 0 {
-			o.heads[i] = heading{texts[line], o.headRef(line, src.heads[1])}
+			o.heads[i] = heading{x.texts[line], o.headRef(line, src.heads[1])}
 		}
 	}
 	o.dataMerges()
@@ -248,6 +243,23 @@ func (o *opened) headings() {
 			o.unitOf(i, t, o.heads[m.where].at)
 		}
 	}
+}
+
+// lineOf finds the line of a heading; 0 if there is none or more than one, which is told.
+func (o *opened) lineOf(w *where, x headIndex) int {
+	lines := x.exact[w.key]
+	if len(lines) == 0 {
+		lines = x.loose[w.key]
+	}
+	switch len(lines) {
+	case 0:
+		o.refuse(headUnknown.problem(w.at, cell.Fault, "", w.text, o.label, workbook.Meant(w.text, x.known), example[o.src.layout]))
+		return 0
+	case 1:
+		return lines[0]
+	}
+	o.refuse(headTwice.problem(w.at, cell.Fault, "", w.text, o.label, o.named(lines), "="+o.lineName(lines[0])))
+	return 0
 }
 
 // headPlace names the heading rows or columns.
