@@ -206,6 +206,7 @@ func (f *chart) plotBands(c draw.Canvas, x func(float64) vg.Length, taken *label
 	for i, b := range f.bands {
 		if i > 0 {
 			c.StrokeLine2(draw.LineStyle{Color: grey, Width: 0.7, Dashes: []vg.Length{1, 2}}, x(b.from), c.Min.Y, x(b.from), c.Max.Y)
+			taken.add(vg.Rectangle{Min: vg.Point{X: x(b.from) - 0.7, Y: c.Min.Y}, Max: vg.Point{X: x(b.from) + 0.7, Y: c.Max.Y}})
 		}
 		room := float64(x(b.to)-x(b.from)) * mmPerPt
 		s := f.fit(b.name, i, room-1)
@@ -321,39 +322,80 @@ func (f *chart) placeNotes(c draw.Canvas, x, y func(float64) vg.Length, taken la
 	return notes, covers
 }
 
-// placeLevel finds room for the words of a limit at its line, in one line, in several, or without its name.
+// placeLevel finds room for the words of a limit at its line, within the steps that it is about: in one line, in several, without
+// its name, or without its other unit; where all of them would lie on something, farther off with a line.
 func (f *chart) placeLevel(c draw.Canvas, x, y func(float64) vg.Length, l *level, taken *labels, brief bool) note {
 	var found note
 	least := math.Inf(1)
 	narrow := append([]string{l.words[0]}, wrap(unseen{}.clean(l.words[1]), 36*f.size/small, f.size, false)...)
-	for k, lines := range [][]string{{strings.Join(l.words, " – ")}, l.words, narrow, l.words[:1]} {
-		if brief && k < 3 {
+	alone, _, _ := strings.Cut(l.words[0], " (")
+	forms := [][]string{{strings.Join(l.words, " – ")}, l.words, narrow, l.words[:1], {alone}}
+	from, to := max(x(l.from), c.Min.X), min(x(l.to), c.Max.X)
+	for k, lines := range forms {
+		if brief && k < 3 || len(lines) > 4 {
 			continue
 		}
-		w := vg.Length(0)
-		for _, s := range lines {
-			w = max(w, f.style(false).Width(s)+3)
-		}
-		h := vg.Length(f.size * 1.2 * float64(len(lines)))
-		left, right := x(l.from)+2, max(x(l.to)-w-2, x(l.from)+2)
+		w, h := f.extent(lines)
+		left, right := from+2, max(to-w-2, from+2)
 		var at []vg.Point
 		for k := 0; k <= 30; k++ { // along the line, above first
 			px := min(max(left+(right-left)*vg.Length(k)/30, c.Min.X+2), c.Max.X-w)
 			at = append(at, vg.Point{X: px, Y: y(l.y) + 1}, vg.Point{X: px, Y: y(l.y) - h - 1})
 		}
-		if end := x(l.to) + 3; end+w < c.Max.X { // or behind its end
-			at = append(at, vg.Point{X: end, Y: y(l.y) - h/2})
-		}
 		box, cost := taken.best(at, w, h, c.Rectangle)
-		if k == 3 { // the temperature alone rather than its name across a curve; the sentence below names it
-			cost += 6
+		if k >= 3 { // the temperature alone rather than its name across a curve; the sentence below names it
+			cost += 6 + float64(k-3)
 		}
-		if len(lines) < 5 && cost < least {
+		if over := max(0, box.Max.X-to, from-box.Min.X); over > 0 { // into a step that it is not about
+			cost += 20 + 2*float64(over)
+		}
+		if cost < least {
 			found, least = note{words: lines, box: box}, cost
 		}
 	}
+	if least > 9 { // more than leaving words out
+		if n, cost := f.levelApart(c, from, to, y(l.y), forms[3:], taken); cost < least {
+			found = n
+		}
+	}
 	taken.label(found.box)
+	if found.from != nil {
+		taken.line(*found.from, *found.to)
+	}
 	return found
+}
+
+// levelApart finds room for the temperature of a limit above or below its line, which goes from one place to another at a height.
+func (f *chart) levelApart(c draw.Canvas, from, to, at vg.Length, forms [][]string, taken *labels) (found note, least float64) {
+	least = math.Inf(1)
+	for k, lines := range forms {
+		w, h := f.extent(lines)
+		for px := from + 2; px+w < min(to, c.Max.X); px += 4 {
+			for py := c.Min.Y + 1; py+h < c.Max.Y; py += 4 {
+				box := vg.Rectangle{Min: vg.Point{X: px, Y: py}, Max: vg.Point{X: px + w, Y: py + h}}
+				end, start := vg.Point{X: px + w/2, Y: py}, vg.Point{X: px + w/2, Y: at}
+				if py+h/2 < at {
+					end.Y = py + h
+				}
+				cost := 8 + float64(k) + 0.05*math.Abs(float64(end.Y-at))
+				if cost += taken.cover(box, least-cost); cost >= least {
+					continue
+				}
+				if cost += taken.crossed(start, end); cost < least {
+					found, least = note{words: lines, box: box, from: &start, to: &end}, cost
+				}
+			}
+		}
+	}
+	return found, least
+}
+
+// extent is the room that lines of words take, with a margin.
+func (f *chart) extent(lines []string) (w, h vg.Length) {
+	for _, s := range lines {
+		w = max(w, f.style(false).Width(s)+3)
+	}
+	return w, vg.Length(f.size * 1.2 * float64(len(lines)))
 }
 
 // placeSpot finds room for a label near a point, or else anywhere on the chart; farther off it gets a line.
@@ -547,7 +589,7 @@ func ticksTo(lo, hi float64, steps []float64, n int) []float64 {
 }
 
 // timeAxis is the axis of time of a chart. A step that is much longer than the others together, such as a cold store, is drawn
-// shorter, with a break in the axis, so that the others can be seen.
+// shorter, with a break in the axis, so that the others can be seen, or much less so if it decides.
 type timeAxis struct {
 	name   string
 	unitS  float64
@@ -557,8 +599,19 @@ type timeAxis struct {
 
 // piece is a step on the axis: from t0 to t1 (s), drawn from x0 to x1 (in the unit of the axis).
 type piece struct {
-	t0, t1, x0, x1 float64
-	broken         bool
+	t0, t1, x0, x1  float64
+	broken, decides bool // drawn shorter; and holds the instant that decides all the same
+}
+
+// breaks is where the break of a piece that is drawn shorter stands: in its middle, or away from the instant that decides.
+func (p *piece) breaks(a *timeAxis, d *deciding) float64 {
+	if !p.decides || d.finding == nil || !finite(d.finding.AtS) {
+		return (p.x0 + p.x1) / 2
+	}
+	if a.at(*d.finding.AtS) > (p.x0+p.x1)/2 {
+		return p.x0 + 0.2*(p.x1-p.x0)
+	}
+	return p.x0 + 0.8*(p.x1-p.x0)
 }
 
 // at is where an instant (s) stands on the axis.
@@ -573,53 +626,186 @@ func (a *timeAxis) at(t float64) float64 {
 
 func (a *timeAxis) end() float64 { return a.pieces[len(a.pieces)-1].x1 }
 
-// newTimeAxis lays out the steps of a history.
-func newTimeAxis(h *model.History) *timeAxis {
-	const long = 6 * 3600.0 // s; shorter steps are never drawn shorter
-	rest := 0.0
-	for _, sp := range h.Spans {
-		if sp.EndS-sp.StartS <= long {
-			rest += sp.EndS - sp.StartS
-		}
+// stretch is the steps of a history between two of its indices, both included; none if to is below from.
+type stretch struct{ from, to int }
+
+func (p stretch) has(i int) bool { return i >= p.from && i <= p.to }
+
+// part is the steps from where the clock of the deciding limit starts to the instant that decides, with those of the same stage beside
+// them.
+func (d *deciding) part() stretch {
+	none := stretch{0, -1}
+	if d.finding == nil {
+		return none
 	}
+	at := d.finding.AtS
+	if at == nil {
+		at = d.finding.ClockEndS
+	}
+	if !finite(at) {
+		return none
+	}
+	in := func(t float64) int {
+		for i, sp := range d.history.Spans {
+			if t <= sp.EndS+1e-6 {
+				return i
+			}
+		}
+		return len(d.history.Spans) - 1
+	}
+	p := stretch{in(*at), in(*at)}
+	if start := d.finding.ClockStartS; finite(start) && *start <= *at {
+		p.from = min(p.to, in(*start+1e-3)) // at the border of two steps: in the second
+	}
+	alike := func(i, k int) bool {
+		a, b := d.history.Spans[i].Step, d.history.Spans[k].Step
+		return a != nil && b != nil && a.Stage != nil && a.Stage == b.Stage
+	}
+	for p.from > 0 && alike(p.from, p.from-1) {
+		p.from--
+	}
+	for p.to+1 < len(d.history.Spans) && alike(p.to, p.to+1) {
+		p.to++
+	}
+	return p
+}
+
+// minutesUpTo is the last instant that is written in minutes, s.
+const minutesUpTo = 4 * 3600.0
+
+// newTimeAxis lays out the steps of a history. The part that decides has at least half of the axis where steps of very different
+// lengths meet.
+func newTimeAxis(h *model.History, decides stretch) *timeAxis {
 	a := &timeAxis{name: say("axis minutes"), unitS: 60}
-	if h.EndS() > 4*3600 {
-		a.name, a.unitS = say("axis hours"), 3600
+	wide := drawnLengths(h, decides)
+	for i, sp := range h.Spans {
+		if to := sp.EndS; to > minutesUpTo && (decides.has(i) || wide[i] >= to-sp.StartS) {
+			a.name, a.unitS = say("axis hours"), 3600
+		}
 	}
 	x := 0.0
-	for _, sp := range h.Spans {
-		wide := sp.EndS - sp.StartS
-		broken := rest > 0 && wide > long && wide > rest
-		if broken {
-			wide = rest / 3
-		}
-		a.pieces = append(a.pieces, piece{sp.StartS, sp.EndS, x, x + wide/a.unitS, broken})
-		x += wide / a.unitS
+	for i, sp := range h.Spans {
+		broken := wide[i] < sp.EndS-sp.StartS
+		a.pieces = append(a.pieces, piece{sp.StartS, sp.EndS, x, x + wide[i]/a.unitS, broken, broken && decides.has(i)})
+		x += wide[i] / a.unitS
 	}
 	a.mark()
 	return a
 }
 
-// mark puts marks at round times outside the steps that are drawn shorter.
-func (a *timeAxis) mark() {
-	steps := []float64{1, 2, 5, 10, 15, 20, 30, 60}
-	if a.unitS == 3600 {
-		steps = []float64{0.5, 1, 2, 3, 4, 6, 12, 24, 48, 96, 168}
+// drawnLengths are the lengths that the steps are drawn with, s: their own, or a shorter one.
+func drawnLengths(h *model.History, decides stretch) []float64 {
+	const long = 6 * 3600.0 // s; shorter steps are drawn shorter only beside a part that decides and is much shorter still
+	const hour = 3600.0
+	wide := make([]float64, len(h.Spans))
+	rest, own, others := 0.0, 0.0, 0.0
+	for i, sp := range h.Spans {
+		if wide[i] = sp.EndS - sp.StartS; wide[i] <= long {
+			rest += wide[i]
+		}
 	}
-	shown := ticksTo(0, a.end(), steps, 9)
-	step := steps[0]
-	if len(shown) > 1 {
-		step = shown[1] - shown[0]
-	}
-	for _, p := range a.pieces {
-		if p.broken {
+	most := 0.0 // of the others
+	for i := range wide {
+		if decides.has(i) {
+			own += wide[i]
 			continue
 		}
-		for k := math.Ceil(p.t0/a.unitS/step - 1e-9); k*step <= p.t1/a.unitS+1e-9; k++ {
-			at := a.at(k * step * a.unitS)
-			if n := len(a.ticks); n == 0 || at-a.ticks[n-1].Value > 0.55*step {
-				a.ticks = append(a.ticks, plot.Tick{Value: at, Label: plain(k*step, 2, nearest)})
+		if rest > 0 && wide[i] > long && wide[i] > rest {
+			wide[i] = rest / 3
+		}
+		others += wide[i]
+		most = max(most, wide[i])
+	}
+	switch {
+	case own > long && own > others && others >= hour: // leave the others up to a third
+		share := max(others/(others+own), min(1./3, others/(6*hour)))
+		if factor := others * (1 - share) / share / own; factor < 0.75 {
+			for i := range wide {
+				if decides.has(i) {
+					wide[i] *= factor
+				}
 			}
+		}
+	case own > 0 && own < others && most > 5*own:
+		giveWay(wide, decides, own)
+	}
+	return wide
+}
+
+// giveWay draws the steps around a part that decides so much shorter that they take together as much as it does, own s: those that
+// are longer than the part if that is enough, else all.
+func giveWay(wide []float64, decides stretch, own float64) {
+	short, tall := 0.0, 0.0
+	for i, w := range wide {
+		switch {
+		case decides.has(i):
+		case w <= own:
+			short += w
+		default:
+			tall += w
+		}
+	}
+	factor, all := (own-short)/tall, false
+	if short > own/2 {
+		factor, all = own/(short+tall), true
+	}
+	for i := range wide {
+		if !decides.has(i) && (all || wide[i] > own) {
+			wide[i] *= factor
+		}
+	}
+}
+
+// mark puts marks at round times outside the steps that are drawn shorter, and at the ends of those: at least three.
+func (a *timeAxis) mark() {
+	steps := []float64{0.01, 0.02, 0.05, 0.1, 0.2, 0.5, 1, 2, 5, 10, 15, 20, 30, 60}
+	if a.unitS == 3600 {
+		steps = []float64{0.05, 0.1, 0.25, 0.5, 1, 2, 3, 4, 6, 12, 24, 48, 96, 168}
+	}
+	for k := len(steps) - 1; k > 0; k-- {
+		const most = 9
+		last := k == len(steps)-1
+		for step := steps[k]; ; step *= 2 {
+			if a.markAt(step); !last || len(a.ticks) <= 2*most {
+				break
+			}
+		}
+		if len(a.ticks) >= 3 && a.end()/steps[k-1] > most {
+			return
+		}
+	}
+	if len(a.ticks) < 3 {
+		a.markAt(steps[0])
+	}
+}
+
+// markAt puts a mark at each multiple of step, in the unit of the axis, or at coarser ones where the axis is drawn shorter.
+func (a *timeAxis) markAt(step float64) {
+	a.ticks = nil
+	put := func(t float64, decimals int) { // t in the unit of the axis
+		at := a.at(t * a.unitS)
+		if n := len(a.ticks); n == 0 || at-a.ticks[n-1].Value > 0.55*step {
+			label := plain(t, decimals, nearest)
+			if s := t * a.unitS; a.unitS < 3600 && s > minutesUpTo { // the end of a store behind minutes
+				label = say("axis in hours", plain(s/3600, decimals, nearest))
+			}
+			a.ticks = append(a.ticks, plot.Tick{Value: at, Label: label})
+		}
+	}
+	for i, p := range a.pieces {
+		t0, t1, own := p.t0/a.unitS, p.t1/a.unitS, step
+		if i == 0 {
+			put(t0, 0)
+		}
+		if p.broken && !p.decides {
+			put(t1, 1)
+			continue
+		}
+		for p.broken && own*(p.x1-p.x0) < 0.8*step*(t1-t0) {
+			own *= 2
+		}
+		for k := math.Ceil(t0/own - 1e-9); k*own <= t1+1e-9; k++ {
+			put(k*own, 2)
 		}
 	}
 }
@@ -656,7 +842,7 @@ func chartTimes(h *model.History) []float64 {
 // history makes the temperature-time chart. With everything it shows surface and medium too.
 func (h *Head) history(p *Product, d *deciding, size, ends float64, everything bool) *chart {
 	hist := d.history
-	axis := newTimeAxis(hist)
+	axis := newTimeAxis(hist, d.part())
 	f := &chart{xName: axis.name, yName: say("axis temperature", h.degree()), x0: 0, x1: axis.end(), xTicks: axis.ticks, size: size, ends: ends}
 	times := chartTimes(hist)
 	course := func(name string, on *model.History, at model.Place) {
@@ -685,13 +871,16 @@ func (h *Head) history(p *Product, d *deciding, size, ends float64, everything b
 		f.levels = append(f.levels, l)
 	}
 	f.y0 = lo - 0.06*(hi-lo) - 1
-	f.y1 = hi + 0.17*(hi-lo) + 1
+	f.y1 = hi + 0.17*(hi-lo) + 1 // for the strip with the names of the steps
+	if size > small {
+		f.y1 += 0.1 * (hi - lo) // larger type on a lower chart
+	}
 	f.yTicks = ticksTo(f.y0, hi+0.03*(hi-lo), []float64{1, 2, 5, 10, 20, 25, 50, 100}, 8)
 	for _, sp := range hist.Spans {
 		b := band{name: sp.Step.Name, from: axis.at(sp.StartS), to: axis.at(sp.EndS)}
 		if p := axis.pieces[len(f.bands)]; p.broken {
 			b.name, b.short = say("band broken", sp.Step.Name, duration(p.t1-p.t0, nearest)), sp.Step.Name
-			f.broken = append(f.broken, (p.x0+p.x1)/2)
+			f.broken = append(f.broken, p.breaks(axis, d))
 		}
 		f.bands = append(f.bands, b)
 	}
@@ -777,7 +966,7 @@ func (h *Head) levels(p *Product, hist *model.History, axis *timeAxis) []level {
 		}
 		n := level{words: []string{words, l.Name}, y: h.shown(*c), from: axis.at(from), to: axis.at(to)}
 		for i := range out {
-			if out[i].y == n.y {
+			if out[i].y == n.y && n.from <= out[i].to && n.to >= out[i].from { // side by side or one over the other
 				out[i].from, out[i].to = min(out[i].from, n.from), max(out[i].to, n.to)
 				if out[i].words[1] != l.Name {
 					out[i].more++

@@ -131,3 +131,103 @@ func finished(t *testing.T, d *doc) []byte {
 	}
 	return b.Bytes()
 }
+
+// The part that decides has at least half of the axis of time where it meets steps of very different lengths, a short step keeps to
+// scale beside it, and every axis has at least three numbers.
+func TestTimeAxisShowsWhatDecides(t *testing.T) {
+	for _, c := range []struct {
+		name       string
+		hours      []float64
+		start, at  float64 // of the clock and the deciding instant, h
+		from, to   int     // the part
+		least      float64 // share of the axis
+		mostOfRest float64 // share of the first step outside
+	}{
+		{"a pot stands a quarter of an hour, then 15 h in the refrigerator", []float64{0.25, 15}, 5, 15.2, 1, 1, 0.9, 0.05},
+		{"a store of two days decides", []float64{2, 3, 48}, 6, 50, 2, 2, 0.6, 0.2},
+		{"cook of 20 min before a long chill", []float64{1. / 3, 5}, 0.2, 0.3, 0, 0, 0.5, 0.5},
+		{"reheat of 21 min at the end", []float64{1. / 3, 1.5, 2.1, 24, 0.35}, 28.1, 28.2, 4, 4, 0.5, 0.1},
+		{"a clock over two steps", []float64{2, 0.2, 4, 40}, 2.1, 5, 1, 2, 0.5, 0.4},
+		{"two long steps alone", []float64{9, 70}, 1, 8, 0, 0, 0.5, 0.5},
+		{"seconds", []float64{0.002}, 0, 0.001, 0, 0, 1, 0},
+		{"alike", []float64{1, 2, 3}, 0.1, 0.9, 0, 0, 0.16, 0.4},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			h, now := &model.History{}, 0.0
+			for _, d := range c.hours {
+				h.Spans = append(h.Spans, model.Span{StartS: now, EndS: now + d*3600})
+				now += d * 3600
+			}
+			start, at := c.start*3600, c.at*3600
+			d := &deciding{history: h, finding: &rules.Finding{ClockStartS: &start, AtS: &at}}
+			if got := d.part(); got != (stretch{c.from, c.to}) {
+				t.Fatalf("part %v, want %d to %d", got, c.from, c.to)
+			}
+			a := newTimeAxis(h, d.part())
+			if got := (a.pieces[c.to].x1 - a.pieces[c.from].x0) / a.end(); got < c.least-1e-9 {
+				t.Errorf("what decides has %.2f of the axis, want at least %.2f", got, c.least)
+			}
+			out := 0
+			if c.from == 0 {
+				out = c.to + 1
+			}
+			if out < len(a.pieces) {
+				if got := (a.pieces[out].x1 - a.pieces[out].x0) / a.end(); got > c.mostOfRest+1e-9 {
+					t.Errorf("step %d has %.2f of the axis, want at most %.2f", out+1, got, c.mostOfRest)
+				}
+			}
+			f := &chart{x1: a.end(), size: kitchen, xTicks: a.ticks}
+			numbers := 0
+			for _, k := range f.apart(330) { // pt: as wide as on the page for the kitchen
+				numbers += btoi(k.Label != "")
+			}
+			if numbers < 3 {
+				t.Errorf("%d numbers at the axis: %v", numbers, a.ticks)
+			}
+			for i := 1; i < len(a.ticks); i++ {
+				if a.ticks[i].Value <= a.ticks[i-1].Value || a.ticks[i].Label == a.ticks[i-1].Label {
+					t.Errorf("mark %v after %v", a.ticks[i], a.ticks[i-1])
+				}
+			}
+		})
+	}
+}
+
+// The words of a limit stay within the steps that it is about, off their borders and off curves.
+func TestLimitWordsKeepToTheirSteps(t *testing.T) {
+	d := newDoc(roastHead(), "T")
+	d.page()
+	const wide, high = 380, 120 // pt
+	for _, c := range []struct {
+		name     string
+		from, to float64 // of the step, of 8
+		y        float64
+	}{{"wide step", 3, 8, 63}, {"short step", 3, 4.2, 63}, {"first step", 0, 2, 63}, {"last step under the fall", 6.6, 8, 20}, {"one unit only", 2, 2.95, 45}} {
+		t.Run(c.name, func(t *testing.T) {
+			f := crowded(3600)
+			f.bands = []band{{name: "a", from: 0, to: c.from}, {name: "b", from: c.from, to: c.to}, {name: "c", from: c.to, to: 8}}
+			f.spots = nil
+			f.levels = []level{{words: []string{"145 °F (62.78 °C)", "A code 7(3): from sixty to twenty-one in two hours (+1)"}, y: c.y, from: c.from, to: c.to}}
+			can := draw.Canvas{Canvas: d.canvas(d.left, d.y, 140, 40), Rectangle: vg.Rectangle{Max: vg.Point{X: wide, Y: high}}}
+			x := func(v float64) vg.Length { return vg.Length(v / 8 * wide) }
+			y := func(v float64) vg.Length { return vg.Length((v - f.y0) / (f.y1 - f.y0) * high) }
+			taken := &labels{}
+			f.plotBands(can, x, taken)
+			curve := f.runs(x, y, 0, taken)[0]
+			taken.add(vg.Rectangle{Min: vg.Point{X: x(c.from), Y: y(c.y) - 0.7}, Max: vg.Point{X: x(c.to), Y: y(c.y) + 0.7}})
+			n := f.notes(can, x, y, taken)[0]
+			if !strings.HasPrefix(n.words[0], "145 °F") {
+				t.Errorf("%q", n.words)
+			}
+			if n.box.Min.X < x(c.from) || n.box.Max.X > x(c.to) {
+				t.Errorf("%q goes from %.0f to %.0f pt, its step from %.0f to %.0f", n.words, n.box.Min.X, n.box.Max.X, x(c.from), x(c.to))
+			}
+			for _, p := range curve {
+				if p.X > n.box.Min.X && p.X < n.box.Max.X && p.Y > n.box.Min.Y && p.Y < n.box.Max.Y {
+					t.Errorf("%q lies on the curve", n.words)
+					break
+				}
+			}
+		})
+	}
+}

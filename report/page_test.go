@@ -148,7 +148,7 @@ func TestTimeAxis(t *testing.T) {
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			h := history(c.hours...)
-			a := newTimeAxis(h)
+			a := newTimeAxis(h, stretch{0, -1})
 			for i, p := range a.pieces {
 				if p.broken != c.broken[i] {
 					t.Errorf("step %d drawn shorter: %v, want %v", i+1, p.broken, c.broken[i])

@@ -240,7 +240,7 @@ func (x *sheet) slowestSentence() string {
 	}
 	out := say(key, x.decides.placeName, strings.Join(s, "; "))
 	var broken []string
-	for i, p := range newTimeAxis(hist).pieces {
+	for i, p := range newTimeAxis(hist, x.decides.part()).pieces {
 		if p.broken {
 			broken = append(broken, say("axis piece", i+1, duration(p.t1-p.t0, nearest)))
 		}

@@ -455,6 +455,7 @@ var words = map[string]string{
 	"plainly equivalent":      "at least the effect of %s at %s",
 	"band broken":             "%s (%s, drawn shorter)",
 	"level more":              " (+%d)",
+	"axis in hours":           "%s h",
 	"axis broken":             " Drawn shorter: step %s.",
 	"axis piece":              "%d (%s)",
 	"more steps":              "(%d more steps, see the table further on)",
