@@ -85,15 +85,41 @@ func (b *base) sitesFor(used int, coarse bool) *sites {
 	return b.sites[used][i]
 }
 
+// newBase makes the base of a kind with n functions.
 func newBase(kind axisKind, n int) *base {
-	b := &base{kind: kind, n: n, d: make([]float64, n), u: make([]float64, n*n), top: make([]float64, n)}
+	b := &base{kind: kind, n: n, d: make([]float64, n), u: make([]float64, n*n)}
 	if kind == lumped {
-		b.u[0], b.top[0] = 1, 1
+		b.u[0], b.top = 1, []float64{1}
 		return b
 	}
+	var eig mat.EigenSym
+	eig.Factorize(b.stiffness(), true) // cannot fail: the matrix is symmetric and finite
+	eig.Values(b.d)
+	b.d[0] = 0 // the constant carries no gradient
+	var vec mat.Dense
+	eig.VectorsTo(&vec)
+	for m := 0; m < n; m++ {
+		for i := 0; i < n; i++ {
+			b.u[m*n+i] = vec.At(m, i)
+		}
+	}
+	for m := 0; m < n; m++ { // the first function is the constant 1 and nothing else
+		b.u[m*n], b.u[m] = 0, 0
+	}
+	b.u[0] = 1
+	b.top = b.functionsAt(1)
+	if kind == planeFull {
+		b.low = b.functionsAt(-1)
+	}
+	return b
+}
+
+// stiffness is the matrix ∫φi'φj' of the polynomials in the measure of the axis, n×n.
+func (b *base) stiffness() *mat.SymDense {
+	n := b.n
 	k := mat.NewSymDense(n, nil)
 	lo, e, norm := 0.0, 0, 1.0
-	switch kind {
+	switch b.kind {
 	case planeFull:
 		lo, norm = -1, 0.5
 	case radial:
@@ -114,37 +140,20 @@ func newBase(kind axisKind, n int) *base {
 			}
 		}
 	}
-	var eig mat.EigenSym
-	eig.Factorize(k, true) // cannot fail: the matrix is symmetric and finite
-	eig.Values(b.d)
-	b.d[0] = 0 // the constant carries no gradient
-	var vec mat.Dense
-	eig.VectorsTo(&vec)
-	for m := 0; m < n; m++ {
-		for i := 0; i < n; i++ {
-			b.u[m*n+i] = vec.At(m, i)
-		}
-	}
-	for m := 0; m < n; m++ { // the first function is the constant 1 and nothing else
-		b.u[m*n], b.u[m] = 0, 0
-	}
-	b.u[0] = 1
-	b.values(1, phi, nil)
-	for i := range b.top {
+	return k
+}
+
+// functionsAt gives the values of the n functions at x.
+func (b *base) functionsAt(x float64) []float64 {
+	n := b.n
+	phi, out := make([]float64, n), make([]float64, n)
+	b.values(x, phi, nil)
+	for i := range out {
 		for m := 0; m < n; m++ {
-			b.top[i] += phi[m] * b.u[m*n+i]
+			out[i] += phi[m] * b.u[m*n+i]
 		}
 	}
-	if kind == planeFull {
-		b.low = make([]float64, n)
-		b.values(-1, phi, nil)
-		for i := range b.low {
-			for m := 0; m < n; m++ {
-				b.low[i] += phi[m] * b.u[m*n+i]
-			}
-		}
-	}
-	return b
+	return out
 }
 
 // values fills phi (n) with the polynomials at x and, unless nil, dphi with their slopes.

@@ -155,7 +155,7 @@ func (v *view) earliest(q path, top int, level, start float64) float64 {
 
 // mayMultiply tells whether the one period of a course may become several, or another one begin, where the food is colder than
 // shown; favourable: the food is in the region the more, the colder it is.
-func (v *view) mayMultiply(held interval2, favourable bool) bool {
+func (v *view) mayMultiply(held period, favourable bool) bool {
 	if favourable {
 		return held.from > v.h.BoundFromS+sameS || held.to < v.stages[len(v.stages)-1].b-sameS
 	}

@@ -168,13 +168,13 @@ func (r region) holds(c float64) bool { return c >= r.lo-r.slack && c <= r.hi+r.
 
 // spent is how long a course was in a region.
 type spent struct {
-	total, longest, first interval2
+	total, longest, first period
 	count                 int     // periods
 	lastEnd               float64 // when the last period ended, s
 }
 
-// interval2 is a length of time with the instants at which it began and ended, all in s.
-type interval2 struct{ s, from, to float64 }
+// period is a length of time with the instants at which it began and ended, all in s.
+type period struct{ s, from, to float64 }
 
 // stay measures how long a path is in a region within intervals whose ends are knots.
 func (p path) stay(ivs []interval, r region) spent {
@@ -256,7 +256,7 @@ func (sp *spent) add(from, to float64) {
 	if to-from <= 1e-9 {
 		return
 	}
-	p := interval2{to - from, from, to}
+	p := period{to - from, from, to}
 	if sp.count == 0 {
 		sp.first, sp.total.from = p, from
 	}
@@ -311,7 +311,7 @@ func (v *view) depth(p path, r region, s float64, c Counting) float64 {
 }
 
 // counted picks the period that a counting asks for.
-func (sp spent) counted(c Counting) interval2 {
+func (sp spent) counted(c Counting) period {
 	switch c {
 	case Continuous:
 		return sp.longest
@@ -321,10 +321,12 @@ func (sp spent) counted(c Counting) interval2 {
 	return sp.total
 }
 
+// stretch is the part of a course between two instants a and b (s), with its temperatures ca and cb there (°C).
+type stretch struct{ a, b, ca, cb float64 }
+
 // refine makes the exact path of a course from its knots: it halves every stretch that is not nearly straight.
 // course fills out with the temperatures at rising times.
 func refine(t, c []float64, course func(t, out []float64), at func(float64) float64) path {
-	type stretch struct{ a, b, ca, cb float64 }
 	var open []stretch
 	for i := 0; i+1 < len(t); i++ {
 		if t[i+1]-t[i] > leastS {

@@ -42,8 +42,8 @@ func judgeFreeze(v *view) Finding {
 }
 
 // after is the longest period in a region from an instant in the n-th stretch of the stages on.
-func (v *view) after(p path, n int, from float64, r region) interval2 {
-	var longest interval2
+func (v *view) after(p path, n int, from float64, r region) period {
+	var longest period
 	for k, iv := range v.stages[n:] {
 		q := path{at: p.at}
 		s := p.in(iv)

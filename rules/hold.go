@@ -64,7 +64,7 @@ func (v *view) heldRegion(t tilt) region {
 }
 
 // when gives clock start, clock end and deciding time of a period; NaN where there was none.
-func when(held interval2, count int) (start, end, at float64) {
+func when(held period, count int) (start, end, at float64) {
 	if count == 0 {
 		return math.NaN(), math.NaN(), math.NaN()
 	}
@@ -116,7 +116,7 @@ func (p path) mostOf(ivs []interval, sign float64) (at, c float64) {
 }
 
 // chilledBetween tells whether a cooling or cold stage lies within a period.
-func (v *view) chilledBetween(held interval2) bool {
+func (v *view) chilledBetween(held period) bool {
 	for _, r := range v.runs {
 		if chills(r.stage) && r.a > held.from && r.b < held.to {
 			return true

@@ -227,7 +227,7 @@ func (k killer) stretch(p path, i int, top float64) float64 {
 		if p.at == nil || (top-math.Max(cs[n], cs[n+1]))*k.lnBelow > 16 {
 			sum += k.straight(ts[n+1]-ts[n], cs[n], cs[n+1])
 		} else {
-			sum += k.gauss(p, ts[n], ts[n+1], cs[n], cs[n+1])
+			sum += k.gauss(p, stretch{ts[n], ts[n+1], cs[n], cs[n+1]})
 		}
 	}
 	return sum
@@ -266,18 +266,18 @@ func gaussNodes(from, to float64) (t [5]float64) {
 	return t
 }
 
-// gauss adds up the exact course between two instants, halved until the rate changes by less than a factor of about 4.5.
-func (k killer) gauss(p path, t0, t1, a, b float64) float64 {
-	if math.Abs(b-a)*math.Max(k.lnBelow, k.lnAbove) > 1.5 && t1-t0 > leastS {
-		m := (t0 + t1) / 2
+// gauss adds up the exact course over a stretch, of which the temperatures are shifted, halved until the rate changes by less than a factor of about 4.5.
+func (k killer) gauss(p path, s stretch) float64 {
+	if math.Abs(s.cb-s.ca)*math.Max(k.lnBelow, k.lnAbove) > 1.5 && s.b-s.a > leastS {
+		m := (s.a + s.b) / 2
 		c := p.at(m) + k.shiftK
-		return k.gauss(p, t0, m, a, c) + k.gauss(p, m, t1, c, b)
+		return k.gauss(p, stretch{s.a, m, s.ca, c}) + k.gauss(p, stretch{m, s.b, c, s.cb})
 	}
 	var cs [5]float64
 	if p.nodes != nil {
-		cs = p.nodes(t0, t1)
+		cs = p.nodes(s.a, s.b)
 	} else {
-		for i, t := range gaussNodes(t0, t1) {
+		for i, t := range gaussNodes(s.a, s.b) {
 			cs[i] = p.at(t)
 		}
 	}
@@ -285,7 +285,7 @@ func (k killer) gauss(p path, t0, t1, a, b float64) float64 {
 	for i, c := range cs {
 		sum += gaussW[i] * k.rate(c+k.shiftK)
 	}
-	return (t1 - t0) / 2 * sum
+	return (s.b - s.a) / 2 * sum
 }
 
 // credited is when the first and the last of the lethality was earned, to a thousandth of its top rate.
