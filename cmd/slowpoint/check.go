@@ -62,6 +62,7 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 	if err != nil {
 		return err
 	}
+	names := filesOf(plan)
 	if err := keepOnly(plan, o.only); err != nil {
 		return err
 	}
@@ -72,7 +73,7 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 		head.Known = append(head.Known, k.KnownAnswer)
 	}
 	head.Products = len(plan.Products)
-	r := &runner{shelf: files, plan: plan, head: head, folder: folder, options: o, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
+	r := &runner{shelf: files, plan: plan, head: head, folder: folder, options: o, names: names, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
 	if err := r.all(); err != nil {
 		return &failure{exitFault, err}
 	}
@@ -189,6 +190,19 @@ func headOf(plan *workbook.Plan, o *checkOptions) (*report.Head, error) {
 	return h, nil
 }
 
+// filesOf gives each product of the whole plan the file name of its report, so that --only names a report as a run of everything does.
+func filesOf(plan *workbook.Plan) map[string]string {
+	products := make([]string, len(plan.Products))
+	for i := range products {
+		products[i] = plan.Products[i].Name
+	}
+	out := make(map[string]string, len(products))
+	for i, file := range fileNames(products) {
+		out[products[i]] = file
+	}
+	return out
+}
+
 // keepOnly drops the products that were not asked for; an unknown name is an error.
 func keepOnly(plan *workbook.Plan, only []string) error {
 	if len(only) == 0 {
@@ -241,8 +255,8 @@ type runner struct {
 	options  *checkOptions
 	progress *progressbar.ProgressBar
 	rows     []report.Row
-	advice   []string // by row: the advice that is not met, a line each
-	files    []string
+	advice   []string               // by row: the advice that is not met, a line each
+	names    map[string]string      // by product: the file name of its report, without its ending
 	refused  []report.NotCalculated // found while calculating
 }
 
@@ -251,11 +265,6 @@ const ahead = 4
 
 // all calculates every product on all processors and writes the results in the order of the plan.
 func (r *runner) all() error {
-	names := make([]string, len(r.plan.Products))
-	for i := range names {
-		names[i] = r.plan.Products[i].Name
-	}
-	r.files = fileNames(names)
 	r.expect()
 	jsonFile, err := r.shelf.spool(r.path("results.json"))
 	if err != nil {
@@ -331,8 +340,8 @@ func (r *runner) expect() {
 	if r.options.onePDF {
 		return
 	}
-	for _, f := range r.files {
-		r.shelf.expect(r.path(f + ".pdf"))
+	for i := range r.plan.Products {
+		r.shelf.expect(r.path(r.names[r.plan.Products[i].Name] + ".pdf"))
 	}
 }
 
@@ -407,7 +416,7 @@ func (r *runner) refuse(d *done, first bool) {
 // one calculates, judges and reports one product.
 func (r *runner) one(i int, reports bool) (d *done) {
 	p := &r.plan.Products[i]
-	d = &done{file: r.files[i] + ".pdf", at: p.At, name: p.Name}
+	d = &done{file: r.names[p.Name] + ".pdf", at: p.At, name: p.Name}
 	defer func() {
 		if fault := recover(); fault != nil {
 			d.err = fmt.Errorf("fault of the program at product %s: %v; please report it with the plan", p.Name, fault)

@@ -384,6 +384,39 @@ func TestFileNames(t *testing.T) {
 	}
 }
 
+// --only names a report as a run of the whole plan does, so that it never takes the place of another product's.
+func TestOnlyKeepsFileNames(t *testing.T) {
+	dir := filepath.Join(t.TempDir(), "plan")
+	writePlan(t, dir, map[string]string{
+		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\na/b,A,slab,21,Mash,60\na_b,A,slab,37,Mash,60\n",
+		"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Freezing point (°C),Source\nMash,0.52,1040,3600,no,-1,invented\n",
+		"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\nA,chill,cool,90,film,3,25\n",
+	})
+	out := dir + "-results"
+	check := func(more ...string) {
+		t.Helper()
+		var told, errs bytes.Buffer
+		if code := run(append([]string{"check", dir, "--date", "2026-01-31"}, more...), nil, &told, &errs); code > exitNotMet {
+			t.Fatalf("exit %d: %s", code, &errs)
+		}
+	}
+	check()
+	first, err := os.ReadFile(filepath.Join(out, "a_b.pdf"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := os.Remove(filepath.Join(out, "a_b_2.pdf")); err != nil {
+		t.Fatal(err)
+	}
+	check("--only", "a_b")
+	if now, err := os.ReadFile(filepath.Join(out, "a_b.pdf")); err != nil || !bytes.Equal(now, first) {
+		t.Errorf("the report of a/b is another: %v", err)
+	}
+	if _, err := os.Stat(filepath.Join(out, "a_b_2.pdf")); err != nil {
+		t.Error(err)
+	}
+}
+
 func TestBeside(t *testing.T) {
 	here := filepath.Join(t.TempDir(), "summer menu")
 	if err := os.MkdirAll(filepath.Join(here, "trays"), 0o755); err != nil {
