@@ -173,18 +173,21 @@ func (b *body) deeper(i int, g, stride [3]int, sign float64) bool {
 func (b *body) promise(i int, g, stride [3]int, sign float64) float64 {
 	low := sign * b.buf[i]
 	for a := range g {
-		x, f := b.around(i, g[a], a, stride[a], sign)
+		x, f := b.around(onAxis{a, i, g[a], stride[a]}, sign)
 		v := valleyOf(x, f)
 		low -= v.bend * (v.start - v.mid) * (v.start - v.mid)
 	}
 	return low
 }
 
+// onAxis is a node i seen along an axis: it is node g there, and its neighbours lie stride away in buf.
+type onAxis struct{ axis, i, g, stride int }
+
 // around gives the coordinates and heights of a node and its two neighbours on an axis; at an end the node itself stands for the neighbour.
-func (b *body) around(i, g, a, stride int, sign float64) (x, f [3]float64) {
-	xs := b.nodes.x[a]
-	lo, hi := max(g-1, 0), min(g+1, len(xs)-1)
-	return [3]float64{xs[lo], xs[g], xs[hi]}, [3]float64{sign * b.buf[i+(lo-g)*stride], sign * b.buf[i], sign * b.buf[i+(hi-g)*stride]}
+func (b *body) around(n onAxis, sign float64) (x, f [3]float64) {
+	xs := b.nodes.x[n.axis]
+	lo, hi := max(n.g-1, 0), min(n.g+1, len(xs)-1)
+	return [3]float64{xs[lo], xs[n.g], xs[hi]}, [3]float64{sign * b.buf[n.i+(lo-n.g)*n.stride], sign * b.buf[n.i], sign * b.buf[n.i+(hi-n.g)*n.stride]}
 }
 
 // lowest gives the coldest and hottest of the nodes in buf; of those that are as cold or hot the nearest to the centre.
@@ -225,7 +228,7 @@ func (b *body) polish(s snapshot, node int, sign float64) extreme {
 	var done [3]bool
 	open := 0
 	for a := range g {
-		if done[a] = b.settled(node, g[a], a, stride[a], sign); !done[a] {
+		if done[a] = b.settled(onAxis{a, node, g[a], stride[a]}, sign); !done[a] {
 			open++
 		}
 	}
@@ -245,7 +248,7 @@ func (b *body) polish(s snapshot, node int, sign float64) extreme {
 			if sweep == 0 && done[a] || b.kinds[a] == lumped {
 				continue
 			}
-			x, f := b.around(node, g[a], a, stride[a], sign)
+			x, f := b.around(onAxis{a, node, g[a], stride[a]}, sign)
 			if sweep == 0 && f[0]-f[1] <= flatK && f[2]-f[1] <= flatK {
 				continue // flat: stay where the centre is nearest
 			}
@@ -270,22 +273,22 @@ func (b *body) polish(s snapshot, node int, sign float64) extreme {
 
 // settled tells from the three nodes at an end of an axis whether the extreme lies at that end: a parabola through them,
 // in x² at a centre of symmetry, falls towards it clearly.
-func (b *body) settled(node, g, a, stride int, sign float64) bool {
-	if b.kinds[a] == lumped {
+func (b *body) settled(n onAxis, sign float64) bool {
+	if b.kinds[n.axis] == lumped {
 		return true
 	}
-	xs := b.nodes.x[a]
-	if g != 0 && g != len(xs)-1 {
+	xs := b.nodes.x[n.axis]
+	if n.g != 0 && n.g != len(xs)-1 {
 		return false
 	}
 	i, j := 1, 2
-	if g != 0 {
-		i, j = g-1, g-2
+	if n.g != 0 {
+		i, j = n.g-1, n.g-2
 	}
-	f0 := sign * b.buf[node]
-	f1, f2 := sign*b.buf[node+(i-g)*stride], sign*b.buf[node+(j-g)*stride]
-	x1, x2 := math.Abs(xs[i]-xs[g]), math.Abs(xs[j]-xs[g])
-	if g == 0 && b.kinds[a] != planeFull {
+	f0 := sign * b.buf[n.i]
+	f1, f2 := sign*b.buf[n.i+(i-n.g)*n.stride], sign*b.buf[n.i+(j-n.g)*n.stride]
+	x1, x2 := math.Abs(xs[i]-xs[n.g]), math.Abs(xs[j]-xs[n.g])
+	if n.g == 0 && b.kinds[n.axis] != planeFull {
 		x1, x2 = x1*x1, x2*x2
 	}
 	rise, next := (f1-f0)/x1, (f2-f1)/(x2-x1)

@@ -211,15 +211,16 @@ func (b *body) turning() (lo, hi, turns int) {
 // beside finds the extreme at or beside a node; sign 1 looks for the coldest. near is where it was found last, and is kept up to date.
 func (w *lineSampler) beside(node int, sign float64, near *float64) extreme {
 	b, xs := w.b, w.b.nodes.x[0]
+	at := onAxis{axis: 0, i: node, g: node, stride: 1}
 	e := extreme{b.buf[node], coord{xs[node]}}
 	lo, hi := max(node-1, 0), min(node+1, len(xs)-1)
-	if b.settled(node, node, 0, 1, sign) || math.Abs(b.buf[lo]-e.c) <= flatK && math.Abs(b.buf[hi]-e.c) <= flatK {
+	if b.settled(at, sign) || math.Abs(b.buf[lo]-e.c) <= flatK && math.Abs(b.buf[hi]-e.c) <= flatK {
 		return e // the latter is flat: stay where the centre is nearest
 	}
 	w.polynomials()
 	v := valley{lo: xs[lo], hi: xs[hi], start: *near}
 	if *near <= v.lo || *near >= v.hi {
-		v = valleyOf(b.around(node, node, 0, 1, sign))
+		v = valleyOf(b.around(at, sign))
 	}
 	if c, to := v.newton(w.f.axes[0].base, w.line, sign); sign*c < sign*e.c-1e-12 {
 		e.c, e.x[0], *near = c, to, to
