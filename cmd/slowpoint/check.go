@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"maps"
 	"os"
 	"path/filepath"
 	"runtime"
@@ -330,18 +331,25 @@ func (r *runner) all() error {
 // path is the place of a results file.
 func (r *runner) path(name string) string { return filepath.Join(r.folder, name) }
 
-// expect tells the shelf which files the run is to write.
+// expect tells the shelf which files the run is to write, and which an earlier one of the plan may have left.
 func (r *runner) expect() {
 	r.shelf.expect(r.path("results.json"), r.path("results.xlsx"), r.path("report.txt"))
-	if r.options.noPDF {
-		return
+	due := map[string]bool{}
+	if !r.options.noPDF {
+		due["summary"] = true
+		r.shelf.expect(r.path("summary.pdf"))
 	}
-	r.shelf.expect(r.path("summary.pdf"))
-	if r.options.onePDF {
-		return
+	if !r.options.noPDF && !r.options.onePDF {
+		for i := range r.plan.Products {
+			f := r.names[r.plan.Products[i].Name]
+			due[f] = true
+			r.shelf.expect(r.path(f + ".pdf"))
+		}
 	}
-	for i := range r.plan.Products {
-		r.shelf.expect(r.path(r.names[r.plan.Products[i].Name] + ".pdf"))
+	for _, f := range append(slices.Sorted(maps.Values(r.names)), "summary") {
+		if !due[f] {
+			r.shelf.spare(r.path(f + ".pdf"))
+		}
 	}
 }
 

@@ -227,6 +227,12 @@ func interrupt(t *testing.T, reports int) {
 	dir := t.TempDir()
 	kitchen(t, filepath.Join(dir, "plan"), 600)
 	out := filepath.Join(dir, "out")
+	if err := os.Mkdir(out, 0o755); err != nil {
+		t.Fatal(err)
+	}
+	if err := os.WriteFile(filepath.Join(out, "results.json"), []byte("old"), 0o644); err != nil {
+		t.Fatal(err)
+	}
 	cmd := exec.Command("slowpoint", "check", filepath.Join(dir, "plan"), "--out", out)
 	var errs, told bytes.Buffer
 	cmd.Stderr, cmd.Stdout = &errs, &told
@@ -261,7 +267,7 @@ func interrupt(t *testing.T, reports int) {
 	}
 	pdfs := finished()
 	said := fmt.Sprintf("stopped: %s of this run finished and whole in %s; not written: results.json, results.xlsx, report.txt, summary.pdf, ", count(len(pdfs), "file"), out)
-	if !strings.Contains(errs.String(), said) || told.Len() > 0 {
+	if !strings.Contains(errs.String(), said) || !strings.Contains(errs.String(), " more; of an earlier run: results.json\n") || told.Len() > 0 {
 		t.Errorf("standard error: %s\nstandard output: %s\nwant %s", &errs, &told, said)
 	}
 	list, err := os.ReadDir(out)
@@ -269,7 +275,7 @@ func interrupt(t *testing.T, reports int) {
 		t.Fatal(err)
 	}
 	for _, f := range list {
-		if !strings.HasPrefix(f.Name(), "Joint_") {
+		if !strings.HasPrefix(f.Name(), "Joint_") && f.Name() != "results.json" {
 			t.Errorf("%s is left over", f.Name())
 		}
 	}
@@ -334,7 +340,13 @@ func TestShelf(t *testing.T) {
 	dir := t.TempDir()
 	s := &shelf{}
 	at := func(name string) string { return filepath.Join(dir, name) }
-	s.expect(at("whole"), at("half"))
+	for _, name := range []string{"whole", "half", "of another product"} {
+		if err := os.WriteFile(at(name), []byte("of an earlier run"), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+	s.expect(at("whole"), at("half"), at("late"))
+	s.spare(at("of another product"), at("never made"))
 	words := func(text string) func(io.Writer) error {
 		return func(w io.Writer) error { _, err := io.WriteString(w, text); return err }
 	}
@@ -353,10 +365,10 @@ func TestShelf(t *testing.T) {
 		t.Error("a file was begun after the shelf was cleared")
 	}
 	list, err := os.ReadDir(dir)
-	if err != nil || len(list) != 1 || list[0].Name() != "whole" {
+	if err != nil || len(list) != 3 {
 		t.Errorf("left over: %v %v", list, err)
 	}
-	if want := "1 file of this run finished and whole in " + dir + "; not written: half"; said != want {
+	if want := "1 file of this run finished and whole in " + dir + "; not written: half, late; of an earlier run: half, of another product"; said != want {
 		t.Errorf("%q, want %q", said, want)
 	}
 }

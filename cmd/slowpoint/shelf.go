@@ -17,6 +17,7 @@ type shelf struct {
 	mu      sync.Mutex
 	open    map[*os.File]bool // temporary files
 	due     []string          // files of the run, as far as they are known beforehand
+	beside  []string          // files that another run of the same plan makes, and this one does not
 	whole   map[string]bool   // files that have their name
 	cleared bool
 }
@@ -26,6 +27,13 @@ func (s *shelf) expect(paths ...string) {
 	s.mu.Lock()
 	defer s.mu.Unlock()
 	s.due = append(s.due, paths...)
+}
+
+// spare names files that the run leaves alone and an earlier run of the same plan may have made.
+func (s *shelf) spare(paths ...string) {
+	s.mu.Lock()
+	defer s.mu.Unlock()
+	s.beside = append(s.beside, paths...)
 }
 
 // begin opens a temporary file in the folder of path.
@@ -80,7 +88,8 @@ func (s *shelf) drop(f *os.File) {
 	}
 }
 
-// clear removes every temporary file and takes no more; it says which files are whole and which are missing.
+// clear removes every temporary file and takes no more; it says which files are whole, which are missing, and which of those in the folder
+// are of an earlier run.
 func (s *shelf) clear() string {
 	s.mu.Lock()
 	defer s.mu.Unlock()
@@ -93,25 +102,43 @@ func (s *shelf) clear() string {
 	if len(s.due) == 0 && len(s.whole) == 0 {
 		return "nothing was written"
 	}
-	var missing []string
-	for _, path := range s.due {
-		if !s.whole[path] {
-			missing = append(missing, filepath.Base(path))
-		}
-	}
-	const most = 5
-	not := strings.Join(missing[:min(len(missing), most)], ", ")
-	if len(missing) > most {
-		not += fmt.Sprintf(" and %d more", len(missing)-most)
-	}
-	if not != "" {
-		not = "; not written: " + not
-	}
 	in := ""
 	if len(s.due) > 0 {
 		in = " in " + filepath.Dir(s.due[0])
 	}
-	return fmt.Sprintf("%s of this run finished and whole%s%s", count(len(s.whole), "file"), in, not)
+	text := fmt.Sprintf("%s of this run finished and whole%s", count(len(s.whole), "file"), in)
+	var missing, earlier []string
+	for _, path := range s.due {
+		if !s.whole[path] {
+			missing = append(missing, path)
+		}
+	}
+	for _, path := range append(missing[:len(missing):len(missing)], s.beside...) {
+		if _, err := os.Lstat(path); err == nil && !s.whole[path] {
+			earlier = append(earlier, path)
+		}
+	}
+	if len(missing) > 0 {
+		text += "; not written: " + few(missing)
+	}
+	if len(earlier) > 0 {
+		text += "; of an earlier run: " + few(earlier)
+	}
+	return text
+}
+
+// few names files, without their folder, the first five of them.
+func few(paths []string) string {
+	const most = 5
+	var names []string
+	for _, path := range paths[:min(len(paths), most)] {
+		names = append(names, filepath.Base(path))
+	}
+	text := strings.Join(names, ", ")
+	if len(paths) > most {
+		text += fmt.Sprintf(" and %d more", len(paths)-most)
+	}
+	return text
 }
 
 // writeWhole writes a file whole or not at all.
