@@ -298,16 +298,20 @@ func TestSharedProcess(t *testing.T) {
 	}
 }
 
+// sharedMap is dishMap with a process that dishes may share, of two steps.
+var sharedMap = strings.NewReplacer(
+	"S | Tin | Products", "S | Way | Products | Process | | | | yes\nS | Chill | Steps | Duration | chill | min | | yes\nS | Tin | Products",
+	"S | Steps | Stage | cook | cook |", "S | Steps | Stage | cook | cook |\nS | Steps | Temperature | chill | 3 °C |\nS | Steps | Surroundings | chill | film |\nS | Steps | Film coefficient | chill | 18 W/m²·K |\nS | Steps | Stage | chill | chill |",
+).Replace(dishMap)
+
 // TestSharedProcessTakenBack: rows of a record that is refused for a later one of its rows are not there for the records after it, which
 // make them themselves.
 func TestSharedProcessTakenBack(t *testing.T) {
-	text := strings.Replace(dishMap, "S | Tin | Products", "S | Way | Products | Process | | | | yes\nS | Chill | Steps | Duration | chill | min | | yes\nS | Tin | Products", 1)
-	text = strings.Replace(text, "S | Steps | Stage | cook | cook |", "S | Steps | Stage | cook | cook |\nS | Steps | Temperature | chill | 3 °C |\nS | Steps | Surroundings | chill | film |\nS | Steps | Film coefficient | chill | 18 W/m²·K |\nS | Steps | Stage | chill | chill |", 1)
 	grid := `Dish | Tin | Start | Oven (°C) | Cook | Chill | Way
 Mash | low | 5 | | | 90 | W
 Hash | round | 6 | 160 | 45 | 95 | W
 Pie | low | 7 | 165 | 50 | 90 | W`
-	r := mappingOf(text).Import([]*workbook.Spreadsheet{fileOf("S.xlsx", gridOf("L", grid))})
+	r := mappingOf(sharedMap).Import([]*workbook.Spreadsheet{fileOf("S.xlsx", gridOf("L", grid))})
 	got := map[string]string{} // the row of theirs that each row is made of, by product or step
 	for _, m := range r.Made {
 		got[strings.TrimSpace(m.Sheet.Name+" "+m.Part)+" "+m.Values[0].Text] += m.Record.short() + ";"
@@ -362,13 +366,15 @@ func addUp(t interface {
 // TestEachRecordOnce: whatever stands in a sheet, each of its filled rows is imported, left out or not imported, and no row vanishes.
 func TestEachRecordOnce(t *testing.T) {
 	cells := rapid.SampledFrom([]string{"", "Mash", "Total", "low", "round", "oval", "5", "160", "45", "-3", "'1,5", "'1,234", "1e9", "n/a", "'45 min", "'165 °F"})
+	minutes := rapid.SampledFrom([]string{"", "45", "46"})
 	rapid.Check(t, func(t *rapid.T) {
-		text, filled := "Dish | Tin | Start | Oven (°C) | Cook", 0
+		text, filled := "Dish | Tin | Start | Oven (°C) | Cook | Chill | Way", 0
 		var places []int
 		for n := range rapid.IntRange(1, 12).Draw(t, "rows") {
-			row := rapid.SliceOfN(cells, 5, 5).Draw(t, "row")
+			row := rapid.SliceOfN(cells, 7, 7).Draw(t, "row")
 			if rapid.Bool().Draw(t, "sound") {
-				row = []string{"Dish " + strconv.Itoa(n), "low", "5", "160", "45"}
+				row = append([]string{"Dish " + strconv.Itoa(n), "low", "5", "160"}, rapid.SliceOfN(minutes, 2, 2).Draw(t, "minutes")...)
+				row = append(row, "W")
 			}
 			if strings.Join(row, "") != "" {
 				filled++
@@ -380,7 +386,7 @@ func TestEachRecordOnce(t *testing.T) {
 		for i := range g.Rows[1:] {
 			g.Rows[i+1].Hidden = rapid.IntRange(0, 9).Draw(t, "hidden") == 0
 		}
-		r := mappingOf(dishMap).Import([]*workbook.Spreadsheet{fileOf("S.xlsx", g)})
+		r := mappingOf(rapid.SampledFrom([]string{dishMap, sharedMap}).Draw(t, "map")).Import([]*workbook.Spreadsheet{fileOf("S.xlsx", g)})
 		addUp(t, r)
 		if r.Counts[0].Read != filled {
 			t.Errorf("%d rows are filled, %d were read", filled, r.Counts[0].Read)
