@@ -25,7 +25,7 @@ func codesCommand(files *shelf) *cobra.Command {
 				showCode(out, &found[i])
 			}
 			if len(found) == 0 {
-				return &failure{exitInput, fmt.Errorf("no starter limit matches --where %q --stage %q", where, stage)}
+				return &failure{exitInput, fmt.Errorf("no starter limit matches%s%s", given("where", where), given("stage", stage))}
 			}
 			fmt.Fprintf(out, "%s. %s\nCopy with: slowpoint codes copy ID... PLAN.xlsx\n", count(len(found), "starter limit"), confirm)
 			return nil
@@ -35,6 +35,14 @@ func codesCommand(files *shelf) *cobra.Command {
 	cmd.Flags().StringVar(&where, "where", "", "part of the name of a `PLACE`, issuer or document")
 	cmd.Flags().StringVar(&stage, "stage", "", "`STAGE`: cook, cool, hold hot, …")
 	return cmd
+}
+
+// given repeats a flag as it was given; "" if it was not.
+func given(flag, value string) string {
+	if value == "" {
+		return ""
+	}
+	return fmt.Sprintf(" --%s %q", flag, value)
 }
 
 // showCode prints one starter limit.

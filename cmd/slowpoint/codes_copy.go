@@ -3,7 +3,6 @@ package main
 import (
 	"fmt"
 	"io"
-	"os"
 	"path/filepath"
 	"strings"
 
@@ -28,8 +27,8 @@ func codesCopyCommand(files *shelf) *cobra.Command {
 			if err := newFile(target); err != nil {
 				return err
 			}
-			if _, err := os.Stat(plan); err != nil {
-				return &failure{exitInput, fmt.Errorf("%s cannot be read: %w", plan, err)}
+			if _, err := workbook.Look(plan); err != nil {
+				return &failure{exitInput, err}
 			}
 			var there, notCarried []string
 			var refused error

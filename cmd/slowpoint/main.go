@@ -63,7 +63,7 @@ func run(args []string, in io.Reader, out, errs io.Writer) int {
 		err = &failure{exitFault, errors.New("stopped: " + files.clear())}
 	}
 	if fault := results.fault(); fault != nil && ctx.Err() == nil {
-		err = &failure{exitFault, fmt.Errorf("what was asked for cannot be told (%w): send it elsewhere", cause(fault))}
+		err = &failure{exitFault, fmt.Errorf("standard output cannot be written (%w): send it elsewhere, or make room", cause(fault))}
 	}
 	if err == nil {
 		return exitMet

@@ -29,9 +29,9 @@ type Rows map[string][]map[string]string
 // plan does; one of the same name that says something else takes a numbered name too.
 // notCarried says, a line each, what the new workbook lacks of the old one. The error says why there is no new workbook.
 func CopyRows(rows Rows, planPath string, w io.Writer) (there, notCarried []string, err error) {
-	info, err := os.Stat(planPath)
+	info, err := Look(planPath)
 	if err != nil {
-		return nil, nil, fmt.Errorf("%s: it cannot be opened (%s)", planPath, reason(err))
+		return nil, nil, err
 	}
 	if info.IsDir() {
 		return nil, nil, fmt.Errorf("%s: rows can be added to a workbook, not to a folder of CSV files: write a workbook with slowpoint blank, copy the rows into it, and save its sheets Limits, Tables and Groups as CSV", planPath)

@@ -31,14 +31,23 @@ func Read(name string) (*Plan, error) {
 	return p, nil
 }
 
-// load reads the sheets of a workbook, or of a folder of CSV files; what says which of our files it is, for the messages.
-func load(name, what string) (grids []*Grid, digest string, err error) {
+// Look asks the system what lies under a name of the user's; the error is worded for the user.
+func Look(name string) (os.FileInfo, error) {
 	info, err := os.Stat(name)
 	switch {
 	case errors.Is(err, os.ErrNotExist):
-		return nil, "", fmt.Errorf("%s: there is no such file or folder; look at the spelling of its name", name)
+		return nil, fmt.Errorf("%s: there is no such file or folder; look at the spelling of its name", name)
 	case err != nil:
-		return nil, "", fmt.Errorf("%s: it cannot be opened (%s)", name, reason(err))
+		return nil, fmt.Errorf("%s: it cannot be opened (%s)", name, reason(err))
+	}
+	return info, nil
+}
+
+// load reads the sheets of a workbook, or of a folder of CSV files; what says which of our files it is, for the messages.
+func load(name, what string) (grids []*Grid, digest string, err error) {
+	info, err := Look(name)
+	if err != nil {
+		return nil, "", err
 	}
 	if !info.IsDir() && !info.Mode().IsRegular() {
 		return nil, "", fmt.Errorf("%s: it is neither a file nor a folder", name)
