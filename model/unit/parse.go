@@ -3,6 +3,7 @@ package unit
 import (
 	"math"
 	"regexp"
+	"slices"
 	"strconv"
 	"strings"
 )
@@ -35,7 +36,7 @@ func (u *Unit) Of(x float64, shown string) Value {
 
 // The forms of a typed number, after blanks were made plain: 1 1/4, 1¼, 1 234.5, 0,5, 1e-3.
 var (
-	fraction  = regexp.MustCompile(`^([+-]?)(?:(\d+)[ -])?(\d+) ?[/⁄] ?(\d+) ?`)
+	fraction  = regexp.MustCompile(`^([+-]?)(?:(\d+)([ -]))?(\d+) ?[/⁄] ?(\d+) ?`)
 	vulgar    = regexp.MustCompile(`^([+-]?)(\d*) ?([½⅓⅔¼¾⅕⅖⅗⅘⅙⅚⅐⅛⅜⅝⅞⅑⅒]) ?`)
 	decimal   = regexp.MustCompile(`^([+-]?)(\d{1,3}(?:[ ']\d{3})+(?:[.,]\d+)?|\d+(?:[.,]\d+)*[.,]?|[.,]\d+)([eE][+-]?\d+)? ?`)
 	clockText = regexp.MustCompile(`^(\d+):([0-5]?\d)(?::([0-5]?\d(?:[.,]\d+)?))?$`)
@@ -46,7 +47,7 @@ var (
 
 func tidy(text string) string { return strings.Join(strings.Fields(blanks.Replace(text)), " ") }
 
-// Parse reads a text as a value: a number, a fraction, a number with its own unit (which wins over the heading's), for durations also
+// Parse reads a text as a value: a number, a fraction where it can be no range (see slashed.of), a number with its own unit (which wins over the heading's), for durations also
 // several of them (1 h 30 min) and clock forms where the heading says which. heading may be nil: then the text must bring its unit.
 // It never panics and never gives a number that is not finite.
 func (q *Quantity) Parse(text string, heading *Unit, d Decimal) (Value, *Mistake) {
@@ -63,7 +64,7 @@ func (q *Quantity) Parse(text string, heading *Unit, d Decimal) (Value, *Mistake
 	var last *Unit
 	own, typedUnit := false, ""
 	for rest := s; n == 0 || rest != ""; n++ {
-		x, after, m := number(rest, d)
+		x, slash, after, m := number(rest, d)
 		if m != nil {
 			if n > 0 {
 				return Value{}, q.noNumber(s)
@@ -98,6 +99,9 @@ func (q *Quantity) Parse(text string, heading *Unit, d Decimal) (Value, *Mistake
 		}
 		if n > 0 && (last == nil || orOne(u.Scale) >= orOne(last.Scale)) {
 			return Value{}, q.noNumber(s)
+		}
+		if slash != nil && !slash.of(u) {
+			return Value{}, &orRange
 		}
 		total += u.In(x)
 		last = u
@@ -185,35 +189,64 @@ func (q *Quantity) example() string {
 	return ", or a number with its unit such as 10 " + q.Units[0].Name()
 }
 
-// number reads the number at the start of a tidy text and gives what follows. An empty Mistake means: no number at all.
-func number(s string, d Decimal) (float64, string, *Mistake) {
+// slashed is a number that is typed with a slash: 1 1/4.
+type slashed struct {
+	over, per  float64 // 1 and 4
+	whole      bool    // a whole number stands before it
+	hyphenated bool    // and is joined to it by a hyphen: 1-1/4
+}
+
+// of tells whether a slash is a fraction in this unit and can be no range: 2/4 under °C, cm or min is more likely "2 to 4" than a half.
+// Inches and feet are divided by halves down to 64ths, and by thirds; hours and days by halves, thirds and quarters. Behind a whole number,
+// as in 1 1/2, such a fraction is one in every unit. Common practice, no source.
+func (f *slashed) of(u *Unit) bool {
+	among := func(list ...float64) bool { return slices.Contains(list, f.per) }
+	proper := f.over >= 1 && f.over < f.per
+	switch name := u.Name(); {
+	case name == "in" || name == "ft":
+		return proper && among(2, 3, 4, 8, 16, 32, 64)
+	case f.hyphenated:
+		return false
+	case f.whole:
+		return proper && among(2, 3, 4, 8, 16, 32, 64)
+	case name == "h" || name == "d":
+		return proper && among(2, 3, 4) && !(f.over == 2 && f.per == 4)
+	}
+	return false
+}
+
+var orRange = Mistake{"reads like a range or a fraction", "type one number: of a range the end that counts, of a fraction its decimal form, as 0.5 for 1/2"}
+
+// number reads the number at the start of a tidy text and gives what follows; slash is told if it has one. An empty Mistake means: no
+// number at all.
+func number(s string, d Decimal) (x float64, slash *slashed, after string, m *Mistake) {
 	if m := fraction.FindStringSubmatch(s); m != nil {
 		whole, _ := strconv.ParseFloat("0"+m[2], 64)
-		a, _ := strconv.ParseFloat(m[3], 64)
-		b, _ := strconv.ParseFloat(m[4], 64)
+		a, _ := strconv.ParseFloat(m[4], 64)
+		b, _ := strconv.ParseFloat(m[5], 64)
 		if b == 0 {
-			return 0, "", &Mistake{}
+			return 0, nil, "", &Mistake{}
 		}
-		return signed(m[1], whole+a/b), s[len(m[0]):], nil
+		return signed(m[1], whole+a/b), &slashed{over: a, per: b, whole: m[2] != "", hyphenated: m[3] == "-"}, s[len(m[0]):], nil
 	}
 	if m := vulgar.FindStringSubmatch(s); m != nil {
 		whole, _ := strconv.ParseFloat("0"+m[2], 64)
 		p := parts[[]rune(m[3])[0]]
-		return signed(m[1], whole+p[0]/p[1]), s[len(m[0]):], nil
+		return signed(m[1], whole+p[0]/p[1]), nil, s[len(m[0]):], nil
 	}
-	m := decimal.FindStringSubmatch(s)
-	if m == nil {
-		return 0, "", &Mistake{}
-	}
-	digits, found := pointed(m[2], d)
+	found := decimal.FindStringSubmatch(s)
 	if found == nil {
-		x, err := strconv.ParseFloat(digits+m[3], 64)
-		if err != nil || math.IsInf(x, 0) {
-			return 0, "", &Mistake{}
-		}
-		return signed(m[1], x), s[len(m[0]):], nil
+		return 0, nil, "", &Mistake{}
 	}
-	return 0, "", found
+	digits, m := pointed(found[2], d)
+	if m != nil {
+		return 0, nil, "", m
+	}
+	x, err := strconv.ParseFloat(digits+found[3], 64)
+	if err != nil || math.IsInf(x, 0) {
+		return 0, nil, "", &Mistake{}
+	}
+	return signed(found[1], x), nil, s[len(found[0]):], nil
 }
 
 func signed(sign string, x float64) float64 {

@@ -53,6 +53,26 @@ func TestParse(t *testing.T) {
 		{"comparison", &Temperature, "≥75", degC, Unsure, 0, "comparison"},
 		{"two numbers", &Length, "20 30", mm, Unsure, 0, "single number"},
 		{"range", &Length, "20-30", mm, Unsure, 0, "single number"},
+		{"a range by a slash, °C", &Temperature, "2/4", degC, Unsure, 0, "range or a fraction"},
+		{"a range by a slash, own unit", &Temperature, "2/4 °F", degC, Unsure, 0, "range or a fraction"},
+		{"a range by a slash, cm", &Length, "5/7 cm", mm, Unsure, 0, "range or a fraction"},
+		{"a half by a slash, mm", &Length, "1/2", mm, Unsure, 0, "range or a fraction"},
+		{"a range by a slash, h", &Duration, "5/6 h", minute, Unsure, 0, "range or a fraction"},
+		{"a half of a quarter, h", &Duration, "2/4 h", minute, Unsure, 0, "range or a fraction"},
+		{"a quarter by a slash, min", &Duration, "1/4", minute, Unsure, 0, "range or a fraction"},
+		{"a range by a slash, in", &Length, "2/1 in", mm, Unsure, 0, "range or a fraction"},
+		{"a seventh, in", &Length, "5/7 in", mm, Unsure, 0, "range or a fraction"},
+		{"a range of a difference", &Difference, "1/2", Difference.Unit("°C difference"), Unsure, 0, "range or a fraction"},
+		{"a range by the sign of fractions", &Temperature, "2⁄4", degC, Unsure, 0, "range or a fraction"},
+		{"a range by a slash, plain number", &Number, "1/2", &Number.Units[0], Unsure, 0, "range or a fraction"},
+		{"a range of a range", &Temperature, "2-3/4", degC, Unsure, 0, "range or a fraction"},
+		{"64ths of an inch", &Length, "5/64", Length.Unit("in"), Unsure, 5. / 64 * 0.0254, ""},
+		{"a third of a foot", &Length, "1⁄3 ft", mm, Unsure, 0.3048 / 3, ""},
+		{"inches by a hyphen", &Length, "1-1/2 in", mm, Unsure, 1.5 * 0.0254, ""},
+		{"three quarters of an hour", &Duration, "3/4 h", minute, Unsure, 2700, ""},
+		{"half a day", &Duration, "1/2", Duration.Unit("d"), Unsure, 43200, ""},
+		{"a whole number and a half", &Duration, "1 1/2", minute, Unsure, 90, ""},
+		{"a half by its sign", &Length, "½ cm", mm, Unsure, 0.005, ""},
 		{"division by zero", &Length, "1/0 in", mm, Unsure, 0, "not a number"},
 		{"feet a second", &Speed, "10 ft/s", Speed.Unit("m/s"), Unsure, 3.048, ""}, // 1 ft = 0.3048 m exactly (international yard, 1959)
 		{"unit of a bare number", &Number, "3 kg", &Number.Units[0], Unsure, 0, "plain number"},
@@ -121,7 +141,7 @@ func TestEvidence(t *testing.T) {
 }
 
 func FuzzCell(f *testing.F) {
-	for _, s := range []string{"1 1/4 in", "1¼", "2:05", "1 h 30 min", "1,234", "165 °F", "NaN", "1e999", "", "½½", "-", "1/0", "1.2.3,4"} {
+	for _, s := range []string{"1 1/4 in", "1¼", "2:05", "1 h 30 min", "1,234", "165 °F", "NaN", "1e999", "", "½½", "-", "1/0", "2/4", "5/7 cm", "5⁄6 h", "1-3/4 in", "2 1/2 °C", "/", "1/2/3", "1.2.3,4"} {
 		f.Add(s, 0)
 	}
 	qs := []Quantity{Temperature, Difference, Length, Duration, Film, Percent, Number}
@@ -131,6 +151,9 @@ func FuzzCell(f *testing.F) {
 			v, m := q.Parse(s, &q.Units[len(q.Units)-1], Decimal(uint(d)%3))
 			if m == nil && (math.IsNaN(v.Computed) || math.IsInf(v.Computed, 0)) {
 				t.Fatalf("%s %q gives %g", q.Name, s, v.Computed)
+			}
+			if m == nil && strings.ContainsAny(s, "/⁄") && q == &Temperature && !strings.Contains(tidy(s), " ") {
+				t.Fatalf("%s %q is taken, as %g", q.Name, s, v.Computed)
 			}
 			if m != nil && (m.Says == "" || m.Mend == "") {
 				t.Fatalf("%s %q: empty mistake", q.Name, s)
