@@ -42,8 +42,11 @@ type grid struct {
 	row     int      // last row written on the current page
 	col     int      // last column written or left blank in it
 	wrote   int      // last column written in it
-	b       []byte
-	n       []byte // the row's number
+	lines   int      // lines of text that the row takes
+	flat    bool     // the row's texts run on to the right, but for that in the last column
+	b       []byte   // of the row
+	open    []byte   // what stands before it
+	n       []byte   // the row's number
 	err     error
 }
 
@@ -98,12 +101,13 @@ func (g *grid) turn() {
 		selected = ` tabSelected="1"`
 	}
 	g.b = append(g.b[:0], `<?xml version="1.0" encoding="UTF-8" standalone="yes"?>`+"\n"+
-		`<worksheet xmlns="http://schemas.openxmlformats.org/spreadsheetml/2006/main"><sheetPr><pageSetUpPr fitToPage="1"/></sheetPr>`+
+		`<worksheet xmlns="http://schemas.openxmlformats.org/spreadsheetml/2006/main">`+g.fit()+
 		`<sheetViews><sheetView`+selected+` workbookViewId="0"><pane ySplit="1" topLeftCell="A2" activePane="bottomLeft" state="frozen"/></sheetView></sheetViews><cols>`...)
 	for i, c := range g.columns {
 		g.b = append(g.b, fmt.Sprintf(`<col min="%d" max="%d" width="%g" customWidth="1"/>`, i+1, i+1, c.width)...)
 	}
-	g.b = append(g.b, `</cols><sheetData>`...)
+	g.open = append(append(g.open[:0], g.b...), `</cols><sheetData>`...)
+	g.b = g.b[:0]
 	g.begin()
 	for _, c := range g.columns {
 		g.styled(c.head, headingStyle)
@@ -123,10 +127,40 @@ func (g *grid) finish(filter string) {
 	if g.paper == "Letter" {
 		size = 1
 	}
-	_, err := fmt.Fprintf(g.pages[len(g.pages)-1], `</sheetData><autoFilter ref="%s"/><pageMargins left="0.5" right="0.5" top="0.6" bottom="0.6" header="0.3" footer="0.3"/>`+
-		`<pageSetup paperSize="%d" orientation="landscape" fitToWidth="1" fitToHeight="0"/></worksheet>`, filter, size)
+	_, err := fmt.Fprintf(g.pages[len(g.pages)-1], `</sheetData><autoFilter ref="%s"/><pageMargins left="0.4" right="0.4" top="0.6" bottom="0.6" header="0.3" footer="0.3"/>`+
+		`<pageSetup paperSize="%d" %s orientation="landscape"/></worksheet>`, filter, size, g.scale())
 	g.fail(err)
 	g.filters = append(g.filters, filter)
+}
+
+// leastScale is the smallest scale that a sheet is printed at; one that is too wide for it goes on in further pages to the right.
+const leastScale = 0.6
+
+// fits tells whether the columns go on the width of a page at leastScale. A column is 7 px a character and 5 px wide, a px 0.75 pt.
+func (g *grid) fits() bool {
+	wide := 0.0 // pt
+	for _, c := range g.columns {
+		wide += (7*c.width + 5) * 0.75
+	}
+	page := 842 - 2*0.4*72 // A4 across, without the margins
+	if g.paper == "Letter" {
+		page = 792 - 2*0.4*72
+	}
+	return wide*leastScale <= page
+}
+
+func (g *grid) fit() string {
+	if g.fits() {
+		return `<sheetPr><pageSetUpPr fitToPage="1"/></sheetPr>`
+	}
+	return ""
+}
+
+func (g *grid) scale() string {
+	if g.fits() {
+		return `fitToWidth="1" fitToHeight="0"`
+	}
+	return fmt.Sprintf(`scale="%.0f" pageOrder="overThenDown"`, 100*leastScale)
 }
 
 // table is the range of the headings and the rows below them.
@@ -143,13 +177,22 @@ func (g *grid) fail(err error) {
 func (g *grid) begin() {
 	g.row++
 	g.col, g.wrote = 0, 0
+	g.lines = 1
 	g.n = strconv.AppendInt(g.n[:0], int64(g.row), 10)
-	g.b = append(append(append(g.b, `<row r="`...), g.n...), `">`...)
 }
 
 func (g *grid) end() {
 	g.b = append(g.b, `</row>`...)
-	_, err := g.pages[len(g.pages)-1].Write(g.b)
+	g.open = append(append(append(g.open, `<row r="`...), g.n...), '"')
+	if g.lines > 1 { // spreadsheet programs do not all make room for wrapped texts by themselves
+		const lineHeight, most = 15, 409 // pt
+		g.open = fmt.Appendf(g.open, ` ht="%d" customHeight="1"`, min(lineHeight*g.lines, most))
+	}
+	page := g.pages[len(g.pages)-1]
+	_, err := page.Write(append(g.open, '>'))
+	g.fail(err)
+	g.open = g.open[:0]
+	_, err = page.Write(g.b)
 	g.fail(err)
 	g.b = g.b[:0]
 }
@@ -173,13 +216,45 @@ func (g *grid) cell(style int) {
 
 func (g *grid) skip() { g.col++ }
 
-func (g *grid) text(s string) { g.styled(s, plainStyle) }
+func (g *grid) text(s string) {
+	style := plainStyle
+	if !g.flat || g.col == len(g.columns)-1 {
+		style = wrappedStyle
+	}
+	g.styled(s, style)
+}
+
+// linesIn is how many lines a text takes in a column so many characters wide, by words; bold type is wider.
+func linesIn(s string, width float64, bold bool) int {
+	room := int(width) - 1 // for the margins
+	if bold {
+		room = int(width*0.85) - 1
+	}
+	lines, at := 1, 0
+	for _, word := range strings.Fields(s) {
+		n := len([]rune(word))
+		if at > 0 && at+1+n > room {
+			lines, at = lines+1, 0
+		}
+		if at > 0 {
+			at++
+		}
+		at += n
+		for ; at > room; at -= room { // a word that is longer than a line
+			lines++
+		}
+	}
+	return lines
+}
 
 // styled writes a text; never a formula, whatever it begins with.
 func (g *grid) styled(s string, style int) {
 	if s == "" {
 		g.skip()
 		return
+	}
+	if style != plainStyle && g.col < len(g.columns) {
+		g.lines = max(g.lines, linesIn(s, g.columns[g.col].width, style == headingStyle))
 	}
 	g.cell(style)
 	g.b = append(g.b, ` t="inlineStr"><is><t xml:space="preserve">`...)
@@ -206,7 +281,7 @@ func (g *grid) number(v float64) {
 	decimals, style := 6, numberStyle
 	if g.col < len(g.columns) {
 		if decimals = g.columns[g.col].decimals; decimals == 0 {
-			style = 0
+			style = wholeStyle
 		}
 	}
 	g.cell(style)
@@ -226,9 +301,11 @@ func (g *grid) maybe(v *float64, factor float64) {
 func (g *grid) words(texts ...string) {
 	g.room(1)
 	g.begin()
+	g.flat = true
 	for _, s := range texts {
 		g.text(s)
 	}
+	g.flat = false
 	g.end()
 }
 
@@ -237,15 +314,20 @@ const (
 	plainStyle   = iota + 1 // text: a formula typed by the user stays one even when the cell is edited
 	headingStyle            // bold, wrapped, on grey
 	numberStyle             // two decimals shown, more where there are more
+	wrappedStyle            // text of several lines
+	wholeStyle              // as the program shows numbers
 )
 
 func makeStyles(f *excelize.File) error {
 	shown := "0.00###"
+	top := &excelize.Alignment{Vertical: "top"}
 	for want, s := range []*excelize.Style{
-		{NumFmt: 49},
-		{Font: &excelize.Font{Bold: true}, Alignment: &excelize.Alignment{WrapText: true, Vertical: "top"},
+		{NumFmt: 49, Alignment: top},
+		{Font: &excelize.Font{Bold: true, Family: "Calibri", Size: 11}, Alignment: &excelize.Alignment{WrapText: true, Vertical: "top"},
 			Fill: excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{"E6E6E6"}}},
-		{CustomNumFmt: &shown},
+		{CustomNumFmt: &shown, Alignment: top},
+		{NumFmt: 49, Alignment: &excelize.Alignment{WrapText: true, Vertical: "top"}},
+		{Alignment: top},
 	} {
 		id, err := f.NewStyle(s)
 		if err != nil {
@@ -302,9 +384,9 @@ func (h *Head) perK() float64 {
 }
 
 func overviewColumns(h *Head) []gridColumn {
-	return []gridColumn{{"No. in the plan", 9, 0}, {"Product", 30, 0}, {"Family", 16, 0}, {"Recipe version", 12, 0}, {"Batch", 12, 0},
-		{"Process", 20, 0}, {"Verdict", 14, 0}, {"Deciding limit", 28, 0}, {"Margin (" + h.unit() + " difference)", 14, 4},
-		{"Margin (min)", 12, 4}, {"Cautions", 10, 0}, {"Row of the plan", 18, 0}, {"Why", 80, 0}}
+	return []gridColumn{{"No. in the plan", 8, 0}, {"Product", 24, 0}, {"Family", 13, 0}, {"Recipe version", 9, 0}, {"Batch", 10, 0},
+		{"Process", 20, 0}, {"Verdict", 13, 0}, {"Deciding limit", 26, 0}, {"Margin (" + h.unit() + " difference)", 12, 4},
+		{"Margin (min)", 10, 4}, {"Cautions", 11, 0}, {"Row of the plan", 15, 0}, {"Why", 54, 0}}
 }
 
 func findingColumns(h *Head) []gridColumn {
@@ -319,7 +401,7 @@ func findingColumns(h *Head) []gridColumn {
 // courseColumns holds a pair of columns for each named point; each row names its own.
 func courseColumns(h *Head) []gridColumn {
 	u := " (" + h.unit() + ")"
-	cs := []gridColumn{{"Product", 30, 0}, {"Step", 20, 0}, {"Stage", 12, 0}, {"Time (min)", 10, 6}, {"Surroundings" + u, 14, 5},
+	cs := []gridColumn{{"Product", 30, 0}, {"Step", 20, 0}, {"Stage", 12, 0}, {"Time (min)", 10, 4}, {"Surroundings" + u, 15, 5},
 		{"Coldest" + u, 12, 5}, {"Hottest" + u, 12, 5}, {"Mean" + u, 12, 5},
 		{"Coldest: up (mm)", 10, 4}, {"Coldest: across (mm)", 10, 4}, {"Coldest: along (mm)", 10, 4},
 		{"Hottest: up (mm)", 10, 4}, {"Hottest: across (mm)", 10, 4}, {"Hottest: along (mm)", 10, 4}}
@@ -661,6 +743,9 @@ func (g *grid) bind(f *excelize.File, parts map[string]*part) error {
 			return err
 		}
 		title := excelize.DefinedName{Name: "_xlnm.Print_Titles", RefersTo: "'" + name + "'!$1:$1", Scope: name}
+		if !g.fits() { // the pages to the right begin with the product
+			title.RefersTo = "'" + name + "'!$A:$A," + title.RefersTo
+		}
 		if err := f.SetDefinedName(&title); err != nil {
 			return err
 		}

@@ -267,3 +267,74 @@ func TestNamesAreKeptOnce(t *testing.T) {
 		t.Errorf("the courses: %.2000s", sheet)
 	}
 }
+
+// Headings and long texts are shown in full, and a sheet is printed on the width of a page only where it stays legible.
+func TestWorkbookIsLegible(t *testing.T) {
+	p := trayProduct(t, "Stew")
+	p.Samples.TimesS[1] += 0.0007 // s: a step that ended a little after the full minute
+	whole := write(t, NewWorkbook, trayHead(), p)
+	f := opened(t, whole)
+	for _, c := range []struct {
+		sheet   string
+		fits    bool
+		heading string // the longest for its column
+		column  string
+	}{
+		{"Overview", true, "Margin (°C difference)", "I"},
+		{"Findings", false, "Margin (°C difference)", "K"},
+		{"Courses", true, "Hottest: across (mm)", "M"},
+		{"Input", true, "Typed", "D"},
+	} {
+		t.Run(c.sheet, func(t *testing.T) {
+			if got, _ := f.GetCellValue(c.sheet, c.column+"1"); got != c.heading {
+				t.Fatalf("%s1 holds %q", c.column, got)
+			}
+			wide, _ := f.GetColWidth(c.sheet, c.column)
+			high, _ := f.GetRowHeight(c.sheet, 1)
+			if need := 15 * float64(linesIn(c.heading, wide, true)); high < need {
+				t.Errorf("the headings are %g pt high, %q takes %g", high, c.heading, need)
+			}
+			layout, err := f.GetPageLayout(c.sheet)
+			if err != nil || *layout.Orientation != "landscape" {
+				t.Errorf("%v, %v", layout, err)
+			}
+			props, _ := f.GetSheetProps(c.sheet)
+			if fits := props.FitToPage != nil && *props.FitToPage; fits != c.fits {
+				t.Errorf("on the width of a page: %v", fits)
+			}
+			sum := 0.0 // pt
+			for i := 1; i <= 60; i++ {
+				if head, _ := f.GetCellValue(c.sheet, cell.ColumnName(i)+"1"); head != "" {
+					w, _ := f.GetColWidth(c.sheet, cell.ColumnName(i))
+					sum += (7*w + 5) * 0.75
+				}
+			}
+			if scale := (842 - 57.6) / sum; c.fits && scale < 0.6 { // A4 across, margins of 0.4 in
+				t.Errorf("printed at %.2f", scale)
+			} else if !c.fits && (scale >= 0.6 || *layout.AdjustTo != 60) {
+				t.Errorf("at %.2f it would fit; printed at %d %%", scale, *layout.AdjustTo)
+			}
+		})
+	}
+	why, _ := f.GetCellValue("Overview", "M3")
+	if high, _ := f.GetRowHeight("Overview", 3); linesIn(why, 54, false) < 2 || high < 15*float64(linesIn(why, 54, false)) {
+		t.Errorf("%q stands in a row %g pt high", why, high)
+	}
+	if got := byHeading(t, f, "Courses", 3)["Time (min)"]; got != "30" {
+		t.Errorf("time %s", got)
+	}
+}
+
+// Lines are counted by words.
+func TestLinesIn(t *testing.T) {
+	for _, c := range []struct {
+		text  string
+		width float64
+		bold  bool
+		want  int
+	}{{"", 10, false, 1}, {"one two", 9, false, 1}, {"one two", 7, false, 2}, {"one two", 9, true, 2}, {"one two three four", 10, false, 3}, {"abcdefghijklmnopqrstu", 11, false, 3}, {"a b", 4, false, 1}} {
+		if got := linesIn(c.text, c.width, c.bold); got != c.want {
+			t.Errorf("%q in %g: %d, want %d", c.text, c.width, got, c.want)
+		}
+	}
+}
