@@ -318,7 +318,7 @@ func TestCopyRefuses(t *testing.T) {
 		path       func(*testing.T) string
 	}{
 		{"a folder", "folder of CSV", func(t *testing.T) string { return t.TempDir() }},
-		{"no such file", "cannot be opened", func(t *testing.T) string { return filepath.Join(t.TempDir(), "none.xlsx") }},
+		{"no such file", "there is no such file or folder; look at the spelling of its name", func(t *testing.T) string { return filepath.Join(t.TempDir(), "none.xlsx") }},
 		{"not a workbook", "none.xlsx: ", func(t *testing.T) string {
 			path := filepath.Join(t.TempDir(), "none.xlsx")
 			if err := os.WriteFile(path, []byte("Limit,Rule\n"), 0o644); err != nil {
