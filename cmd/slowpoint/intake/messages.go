@@ -103,6 +103,7 @@ var (
 	nothingFilled = saying{"None of the cells that are mapped is filled", "leave such records out by a rule of the sheet Leave out, or fill them"}
 	productTwice  = saying{"is there twice; the first is {1}", "give each product a name of its own, or leave one out"}
 	stepOther     = saying{"{1} differs from {2}, which makes the same row of the plan ({3})", "let both say the same, or give each its own name"}
+	routeOther    = saying{"is a process that is made here of {1}, but in {2} of {3}", "fill the same steps in all records of a process, or give each kind a process of its own"}
 )
 
 var headWrong = map[string]saying{rowLayout: headRows, columnLayout: headColumns}

@@ -21,6 +21,7 @@ type importer struct {
 	products map[string]Place // where each product is
 	made     map[string]int   // index in Result.Made of rows that several records may make
 	fresh    []string         // keys of made that the record at hand added
+	routes   map[string]route // of each process that records name, by key
 	labels   map[*workbook.Grid]string
 
 	// of the source at hand
@@ -37,7 +38,7 @@ func (m *Mapping) Import(files []*workbook.Spreadsheet) *Result {
 	for _, f := range files {
 		r.Files = append(r.Files, File{f.Name, f.SHA256})
 	}
-	im := &importer{m: m, files: files, r: r, products: map[string]Place{}, made: map[string]int{}, labels: map[*workbook.Grid]string{}}
+	im := &importer{m: m, files: files, r: r, products: map[string]Place{}, made: map[string]int{}, routes: map[string]route{}, labels: map[*workbook.Grid]string{}}
 	if m.lost {
 		r.Problems = im.everything()
 		return r
@@ -567,12 +568,62 @@ func (im *importer) rows(o *opened, rec record, from int) {
 			im.make(o, rec, t)
 		}
 	}
+	if len(im.r.Not) == from {
+		im.sameRoute(o, rec)
+	}
 	if len(im.r.Not) > from { // taken back, so that a later record may make them
 		im.r.Made = im.r.Made[:was]
 		for _, key := range im.fresh {
 			delete(im.made, key)
 		}
 	}
+}
+
+// route is the steps that a process was made of.
+type route struct {
+	at    Place    // the record that made them first
+	steps []string // names of its rows of Steps and Faces, in order
+}
+
+// sameRoute holds the steps that a record makes against those that another one made of the same process: of a step whose cells are blank
+// here a dish would take what stands there, without a word. A record that fills no step at all takes the process as it is.
+func (im *importer) sameRoute(o *opened, rec record) {
+	p := o.src.products()
+	if p == nil {
+		return
+	}
+	i := slices.Index(p.sheet.Columns, p.sheet.Column("Process"))
+	if p.slots[i] == nil { // a process of its own
+		return
+	}
+	now, own := route{at: rec.at}, false
+	for k, t := range o.src.rows {
+		if t.sheet.Name != "Steps" && t.sheet.Name != "Faces" || !im.makes(o, k) || im.said(t, "Product") != "" {
+			continue
+		}
+		own = own || t.mapped
+		now.steps = append(now.steps, strings.TrimSpace(im.said(t, "Step")+" "+im.said(t, "Face")))
+	}
+	if !own {
+		return
+	}
+	name := im.values[p.from+i]
+	was, known := im.routes[workbook.Key(name.Text)]
+	switch {
+	case !known:
+		im.routes[workbook.Key(name.Text)] = now
+	case !slices.EqualFunc(was.steps, now.steps, func(a, b string) bool { return workbook.Key(a) == workbook.Key(b) }):
+		im.refuse(o, rec, rec.at, name.Column, name.Text, routeOther, strings.Join(now.steps, ", "), im.where(was.at), strings.Join(was.steps, ", "))
+	}
+}
+
+// said is the text of a column of a row that the record makes; "" if it is blank or the sheet has none.
+func (im *importer) said(t *target, heading string) string {
+	i := slices.IndexFunc(t.sheet.Columns, func(c *workbook.Column) bool { return c.Heading == heading })
+	if i >= 0 && im.filled[t.from+i] {
+		return im.values[t.from+i].Text
+	}
+	return ""
 }
 
 // any tells whether any mapped cell is filled.
@@ -711,11 +762,7 @@ func (im *importer) keyOf(t *target, columns []string) string {
 	im.key = append(im.key[:0], t.sheet.Name...)
 	for _, h := range columns {
 		im.key = append(im.key, 0)
-		for i, c := range t.sheet.Columns {
-			if c.Heading == h && im.filled[t.from+i] {
-				im.key = append(im.key, workbook.Key(im.values[t.from+i].Text)...)
-			}
-		}
+		im.key = append(im.key, workbook.Key(im.said(t, h))...)
 	}
 	return string(im.key)
 }
@@ -724,10 +771,8 @@ func (im *importer) keyOf(t *target, columns []string) string {
 func (im *importer) words(t *target, columns []string) string {
 	var out []string
 	for _, h := range columns {
-		for i, c := range t.sheet.Columns {
-			if c.Heading == h && im.filled[t.from+i] {
-				out = append(out, h+" "+im.values[t.from+i].Text)
-			}
+		if w := im.said(t, h); w != "" {
+			out = append(out, h+" "+w)
 		}
 	}
 	return strings.Join(out, ", ")

@@ -300,25 +300,40 @@ func TestSharedProcess(t *testing.T) {
 
 // sharedMap is dishMap with a process that dishes may share, of two steps.
 var sharedMap = strings.NewReplacer(
-	"S | Tin | Products", "S | Way | Products | Process | | | | yes\nS | Chill | Steps | Duration | chill | min | | yes\nS | Tin | Products",
+	"S | Tin | Products", "S | Way | Products | Process | | | | yes\nS | Tin | Products",
+	"S | Cook | Steps | Duration | cook | min | | yes", "S | Cook | Steps | Duration | cook | min | | yes\nS | Chill | Steps | Duration | chill | min | | yes",
 	"S | Steps | Stage | cook | cook |", "S | Steps | Stage | cook | cook |\nS | Steps | Temperature | chill | 3 °C |\nS | Steps | Surroundings | chill | film |\nS | Steps | Film coefficient | chill | 18 W/m²·K |\nS | Steps | Stage | chill | chill |",
 ).Replace(dishMap)
 
-// TestSharedProcessTakenBack: rows of a record that is refused for a later one of its rows are not there for the records after it, which
-// make them themselves.
-func TestSharedProcessTakenBack(t *testing.T) {
-	grid := `Dish | Tin | Start | Oven (°C) | Cook | Chill | Way
-Mash | low | 5 | | | 90 | W
-Hash | round | 6 | 160 | 45 | 95 | W
-Pie | low | 7 | 165 | 50 | 90 | W`
-	r := mappingOf(sharedMap).Import([]*workbook.Spreadsheet{fileOf("S.xlsx", gridOf("L", grid))})
-	got := map[string]string{} // the row of theirs that each row is made of, by product or step
-	for _, m := range r.Made {
-		got[strings.TrimSpace(m.Sheet.Name+" "+m.Part)+" "+m.Values[0].Text] += m.Record.short() + ";"
-	}
-	want := map[string]string{"Products Mash": "row 2;", "Products Pie": "row 4;", "Steps chill W": "row 2;", "Steps cook W": "row 4;"}
-	if diff := cmp.Diff(want, got); diff != "" || len(r.Not) != 1 || r.Not[0].At.short() != "F3" {
-		t.Errorf("made (-want +got):\n%s\nnot: %+v\n%s", diff, r.Not, problemLines(r))
+// TestSharedProcessOfOtherSteps: a dish whose cells of a step are blank does not take the step that another dish of its process has, and
+// what is refused leaves nothing behind for the records after it. One that fills no step takes the process as it is.
+func TestSharedProcessOfOtherSteps(t *testing.T) {
+	for _, c := range []struct {
+		name, rows string
+		made       string // sheet, part and first column of each row, with the row of theirs that it is made of
+		not        string // what is not imported, and why
+	}{
+		{"a step is lacking", "Mash | low | 5 | 160 | 45 | 90 | W\nHash | round | 6 | | | 90 | W", "Products Mash 2; Steps cook W 2; Steps chill W 2",
+			"row 3 is a process that is made here of chill, but in S.xlsx › L row 2 of cook, chill"},
+		{"a step is new", "Mash | low | 5 | | | 90 | W\nHash | round | 6 | 160 | 45 | 90 | w", "Products Mash 2; Steps chill W 2",
+			"row 3 is a process that is made here of cook, chill, but in S.xlsx › L row 2 of chill"},
+		{"two after each other", "Mash | low | 5 | | | 90 | W\nHash | round | 6 | 160 | 45 | 95 | W\nPie | low | 7 | 165 | 50 | 90 | W", "Products Mash 2; Steps chill W 2",
+			"F3 Duration differs from S.xlsx › L row 2, which makes the same row of the plan (Process W, Step chill); row 4 is a process that is made here of cook, chill, but in S.xlsx › L row 2 of chill"},
+		{"no step at all", "Mash | low | 5 | 160 | 45 | 90 | W\nHash | round | 6 | | | | W", "Products Mash 2; Steps cook W 2; Steps chill W 2; Products Hash 3", ""},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			r := mappingOf(sharedMap).Import([]*workbook.Spreadsheet{fileOf("S.xlsx", gridOf("L", "Dish | Tin | Start | Oven (°C) | Cook | Chill | Way\n"+c.rows))})
+			var made, not []string
+			for _, m := range r.Made {
+				made = append(made, fmt.Sprintf("%s %s %d", strings.TrimSpace(m.Sheet.Name+" "+m.Part), m.Values[0].Text, m.Record.Row))
+			}
+			for _, n := range r.Not {
+				not = append(not, n.At.short()+" "+n.Why)
+			}
+			if diff := cmp.Diff([]string{c.made, c.not}, []string{strings.Join(made, "; "), strings.Join(not, "; ")}); diff != "" {
+				t.Errorf("made and not (-want +got):\n%s\n%s", diff, problemLines(r))
+			}
+		})
 	}
 }
 
