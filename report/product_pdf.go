@@ -798,11 +798,8 @@ func (x *sheet) slowest() {
 	for _, sp := range p.History.Spans {
 		cold, hot := "", ""
 		if i := sampleAt(s.TimesS, sp.EndS); i >= 0 && i < len(s.Coldest) && i < len(s.Hottest) {
-			cold, hot = h.temperature(s.Coldest[i], down), h.temperature(s.Hottest[i], up)
-			if i < len(s.ColdestAt) && i < len(s.HottestAt) {
-				cold += ", " + x.extremePlace(i, s.Coldest, s.ColdestAt)
-				hot += ", " + x.extremePlace(i, s.Hottest, s.HottestAt)
-			}
+			low, high := x.extremes(i, &sp, &told{head: h})
+			cold, hot = joinedBy(low.words, low.where), joinedBy(high.words, high.where)
 		}
 		name := sp.Step.Name
 		if sp.Step.Stage != nil && sp.Step.Stage.Name != name {
@@ -837,6 +834,66 @@ func sampleAt(times []float64, t float64) int {
 		}
 	}
 	return -1
+}
+
+// told are the temperatures that one sentence or row has named already, all at one instant of one run: a place that it names again
+// has the same number again, however it would be rounded there.
+type told struct {
+	head *Head
+	said []extreme
+}
+
+// extreme is a place with its temperature.
+type extreme struct {
+	where, words string
+	c            float64 // °C
+}
+
+func (t *told) temperature(where string, c float64, r rounding) string {
+	const alike = 0.02 // K: places with one name lie near each other
+	for _, e := range t.said {
+		if e.where == where && math.Abs(e.c-c) < alike {
+			return e.words
+		}
+	}
+	e := extreme{where, t.head.temperature(c, r), c}
+	t.said = append(t.said, e)
+	return e.words
+}
+
+// extremes are the coldest and the hottest place at a sample, the end of a step: the unfavourable one is rounded first, for in a food
+// of one temperature both have the same name. where is "" if the place is not known.
+func (x *sheet) extremes(i int, sp *model.Span, told *told) (cold, hot extreme) {
+	s := &x.p.Samples
+	one := func(c []float64, at []model.Place, r rounding) (e extreme) {
+		if i >= len(c) || !finite(&c[i]) {
+			return e
+		}
+		if i < len(at) {
+			e.where = x.extremePlace(i, c, at)
+		}
+		e.c, e.words = c[i], told.temperature(e.where, c[i], r)
+		return e
+	}
+	if heats(sp) {
+		cold = one(s.Coldest, s.ColdestAt, down)
+		return cold, one(s.Hottest, s.HottestAt, up)
+	}
+	hot = one(s.Hottest, s.HottestAt, up)
+	return one(s.Coldest, s.ColdestAt, down), hot
+}
+
+// heats tells whether a step is a heating.
+func heats(sp *model.Span) bool {
+	return sp.Step != nil && sp.Step.Stage != nil && sp.Step.Stage.Heats
+}
+
+// joinedBy puts a comma between two texts if there are two.
+func joinedBy(a, b string) string {
+	if a == "" || b == "" {
+		return a + b
+	}
+	return a + ", " + b
 }
 
 // extremePlace words where the coldest or hottest place is at a sample; a hundredth of a degree from the centre is the centre,

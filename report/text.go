@@ -233,13 +233,19 @@ func (t *Text) course(x *sheet) {
 				out = append(out, fmt.Sprintf(textWords["step medium"], h.stated(c)))
 			}
 		}
-		out = append(out, t.atEnd(p, sp.EndS)...)
+		told := &told{head: h}
+		out = append(out, t.atEnd(x, sp, told)...)
 		if w := x.decides.history; w.At != nil {
 			r := up
-			if sp.Step != nil && sp.Step.Stage != nil && sp.Step.Stage.Heats {
+			if heats(sp) {
 				r = down
 			}
-			out = append(out, fmt.Sprintf(textWords["deciding"], x.decides.placeName, h.temperature(w.At(x.decides.place, sp.EndS), r)))
+			c, where := w.At(x.decides.place, sp.EndS), x.decides.placeName
+			if w == p.Low { // another run has its own numbers
+				out = append(out, fmt.Sprintf(textWords["deciding"], where+textWords["limit low"], h.temperature(c, r)))
+			} else {
+				out = append(out, fmt.Sprintf(textWords["deciding"], where, told.temperature(where, c, r)))
+			}
 		}
 		t.item(strings.Join(out, "; "))
 	}
@@ -256,26 +262,29 @@ func (t *Text) course(x *sheet) {
 	}
 }
 
-// atEnd is what the samples say at an instant.
-func (t *Text) atEnd(p *Product, at float64) []string {
-	h, s, i := t.h, &p.Samples, sampleAt(p.Samples.TimesS, at)
+// atEnd is what the samples say at the end of a step.
+func (t *Text) atEnd(x *sheet, sp *model.Span, told *told) []string {
+	h, p, s := t.h, x.p, &x.p.Samples
+	i := sampleAt(s.TimesS, sp.EndS)
 	if i < 0 {
 		return nil
 	}
 	var out []string
-	place := func(key string, c []float64, where []model.Place, r rounding) {
-		if i < len(c) && i < len(where) && finite(&c[i]) {
-			out = append(out, fmt.Sprintf(textWords[key], h.temperature(c[i], r), p.Product.Where(where[i])))
+	cold, hot := x.extremes(i, sp, told)
+	for _, e := range []struct {
+		key string
+		at  extreme
+	}{{"coldest", cold}, {"hottest", hot}} {
+		if e.at.where != "" {
+			out = append(out, fmt.Sprintf(textWords[e.key], e.at.words, e.at.where))
 		}
 	}
-	place("coldest", s.Coldest, s.ColdestAt, down)
-	place("hottest", s.Hottest, s.HottestAt, up)
 	if i < len(s.Mean) && finite(&s.Mean[i]) {
 		out = append(out, fmt.Sprintf(textWords["mean"], h.temperature(s.Mean[i], nearest)))
 	}
 	for n, pt := range p.History.Points {
 		if n < len(s.Points) && i < len(s.Points[n]) && finite(&s.Points[n][i]) {
-			out = append(out, fmt.Sprintf(textWords["point"], pt.Name, h.temperature(s.Points[n][i], nearest)))
+			out = append(out, fmt.Sprintf(textWords["point"], pt.Name, told.temperature(pt.Name, s.Points[n][i], nearest)))
 		}
 	}
 	return out

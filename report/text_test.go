@@ -249,3 +249,41 @@ func BenchmarkText(b *testing.B) {
 		b.Fatal(err)
 	}
 }
+
+// A place that one sentence names twice at one instant has one number: the hottest place and the point at the centre, and both ends
+// of a food of one temperature.
+func TestOnePlaceOneNumber(t *testing.T) {
+	h := trayHead()
+	for _, c := range []struct {
+		name              string
+		heats             bool
+		cold, hot, centre float64
+		want              []string
+	}{
+		{"hottest is the centre, cooling", false, 3, 4.12, 4.12, []string{"hottest at the end 4.2 °C (39.5 °F) (centre)", "; centre at the end 4.2 °C (39.5 °F)"}},
+		{"coldest is the centre, heating", true, 71.96, 80, 71.96, []string{"coldest at the end 71.9 °C (161.5 °F) (centre)", "; centre at the end 71.9 °C (161.5 °F)"}},
+		{"one temperature, cooling", false, 3.031, 3.035, 3.033, []string{"coldest at the end 3.1 °C (37.5 °F) (centre)", "hottest at the end 3.1 °C (37.5 °F) (centre)", "; centre at the end 3.1 °C (37.5 °F)"}},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			p := trayProduct(t, "Stew")
+			s := &p.Samples
+			span := 0
+			if !c.heats {
+				span = 1
+			}
+			i := sampleAt(s.TimesS, p.History.Spans[span].EndS)
+			s.Coldest[i], s.Hottest[i], s.Points[0][i] = c.cold, c.hot, c.centre
+			text := writeText(t, h, p)
+			for _, w := range c.want {
+				if !strings.Contains(text, w) {
+					t.Errorf("%q is missing", w)
+				}
+			}
+			x := &sheet{doc: &doc{head: h}, p: p, decides: p.decides()}
+			cold, hot := x.extremes(i, &p.History.Spans[span], &told{head: h})
+			if cold.where == hot.where && cold.words != hot.words {
+				t.Errorf("%s: %s and %s", cold.where, cold.words, hot.words)
+			}
+		})
+	}
+}
