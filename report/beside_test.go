@@ -137,6 +137,24 @@ func TestVacuous(t *testing.T) {
 	}
 }
 
+// TestCheckTellsOfAnEdge says on the first page, where a place within the food is named, why it is that one: beyond it no clock started.
+func TestCheckTellsOfAnEdge(t *testing.T) {
+	p := roast(t, model.Brick, rules.NotMet)
+	const says = "(beyond this place nothing was ever above 60 °C, so no clock ran there)"
+	checks := func() string {
+		x := &sheet{doc: newDoc(roastHead(), "T"), p: p, decides: p.decides(), order: p.worstFirst()}
+		return strings.Join(x.checks(), "\n")
+	}
+	if s := checks(); strings.Contains(s, "beyond this place") {
+		t.Error(s)
+	}
+	d := p.decides().finding
+	d.EdgeOf = "60 °C"
+	if s := checks(); strings.Count(strings.Join(strings.Fields(s), " "), says) != 1 {
+		t.Error(s)
+	}
+}
+
 // TestFilmStandsForEvaporation gives no caution on evaporation where the typed coefficient stands for everything.
 func TestFilmStandsForEvaporation(t *testing.T) {
 	for _, x := range []struct {

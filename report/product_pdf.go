@@ -282,6 +282,9 @@ func (x *sheet) checks() []string {
 		if place == "" {
 			place = x.decides.placeName
 		}
+		if f.EdgeOf != "" && x.short < 2 {
+			place = say("check edge", place, f.EdgeOf)
+		}
 		when := say("check any time")
 		if len(f.Limit.Stages) > 0 {
 			when = say("check throughout", stages(f.Limit))

@@ -162,6 +162,7 @@ var words = map[string]string{
 	"at the end of":         "%d %s (%s): %s",
 	"checks title":          "Check with the probe",
 	"check":                 "%s; probe: %s. Asked for: %s.",
+	"check edge":            "%s (beyond this place nothing was ever above %s, so no clock ran there)",
 	"check at":              "At about %s from the start (%s)",
 	"check expects":         "; the model expects %s",
 	"check recorded":        "; the record has %s",

@@ -111,6 +111,7 @@ func (v *view) judgePlaces(q question) Finding {
 		}
 		if edge.edge != nil && f.Verdict != NotApplicable {
 			f.Notes = append(f.Notes, v.edgeNote(edge, q, near(place, edge.place)))
+			f.EdgeOf = v.l.startWords()
 			f.MarginS = finite(edge.nominal.margin)
 		}
 	} else {

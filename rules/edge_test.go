@@ -164,6 +164,9 @@ func TestClockAtTheEdgeOfASlab(t *testing.T) {
 	if want := "at the edge itself, where it only just was, it is " + lasting(60*supremum, 0); !strings.Contains(strings.Join(f.Notes, " "), want) {
 		t.Errorf("no note says %q: %q", want, f.Notes)
 	}
+	if f.EdgeOf == "" || !strings.Contains(f.Notes[0], "ever were above "+f.EdgeOf) {
+		t.Errorf("at the edge of what was above %q: %q", f.EdgeOf, f.Notes)
+	}
 	for _, x := range []struct {
 		allowedMin float64
 		want       Verdict

@@ -133,6 +133,7 @@ type Finding struct {
 	MarginK         *float64 // room in the limit's own temperature; negative: lacking
 	MarginPlace     string   // the place of MarginK in words where it is not Place; "" elsewhere
 	MarginS         *float64 // room in time; negative: lacking
+	EdgeOf          string   // "60 °C": Place lies at the edge of those that ever were above it, beyond which no clock started; "" elsewhere
 	AtS             *float64 // deciding time from the start of the chain
 	Place           *model.Place
 	PlaceName       string // every point: where in words ("centre", "surface", "14 mm above the underside"); the typed Where otherwise
