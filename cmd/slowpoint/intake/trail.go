@@ -31,6 +31,7 @@ type variant struct {
 	group
 	places  map[*workbook.Column]spot
 	columns []*workbook.Column // in the order of their first value
+	n       int                // rows
 }
 
 // spot is a place of a record.
@@ -38,6 +39,7 @@ type spot struct {
 	kind     spotKind
 	col, row int
 	mapping  string // a cell of the mapping
+	words    bool   // the cell holds a word that the mapping says the meaning of
 }
 
 type spotKind uint8
@@ -58,7 +60,7 @@ func newTrail(r *Result) *trail {
 
 // spotOf is the place of a value within its record; false if it comes from no cell.
 func spotOf(record Place, file string, v *Value) (spot, bool) {
-	at := v.At
+	at, words := v.At, v.Const != ""
 	switch {
 	case at.Row == 0 && at.Col == 0 && v.Const == "" && v.Text == file:
 		return spot{kind: ofFile}, true
@@ -69,17 +71,21 @@ func spotOf(record Place, file string, v *Value) (spot, bool) {
 	case at.Row == 0 && at.Col == 0:
 		return spot{kind: ofMap, mapping: v.Const}, true
 	case record.Row > 0 && record.Col > 0 && at.Row >= record.Row:
-		return spot{kind: ofBlock, col: at.Col, row: at.Row - record.Row}, true
+		return spot{kind: ofBlock, col: at.Col, row: at.Row - record.Row, words: words}, true
 	case record.Row > 0 && record.Col == 0:
-		return spot{kind: ofRow, col: at.Col}, true
+		return spot{kind: ofRow, col: at.Col, words: words}, true
 	case record.Col > 0 && record.Row == 0:
-		return spot{kind: ofCol, row: at.Row}, true
+		return spot{kind: ofCol, row: at.Row, words: words}, true
 	}
-	return spot{kind: ofSheet, col: at.Col, row: at.Row}, true
+	return spot{kind: ofSheet, col: at.Col, row: at.Row, words: words}, true
 }
 
 // String is the place as Origins tells it.
 func (s spot) String() string {
+	if s.words {
+		s.words = false
+		return s.String() + " by Words"
+	}
 	switch s.kind {
 	case ofRow:
 		return cell.ColumnName(s.col)
@@ -115,6 +121,7 @@ func (t *trail) ofMade(m *Made) string {
 	if fits == nil {
 		fits = t.open(g)
 	}
+	fits.n++
 	for i := range m.Values {
 		if s, ok := spotOf(m.Record, file, &m.Values[i]); ok && m.Values[i].Text != "" {
 			fits.put(m.Values[i].Column, s)
@@ -160,6 +167,7 @@ func (t *trail) ofLine(s *workbook.Sheet, l *workbook.Line) string {
 	if t.variants[g] == nil {
 		t.open(g)
 	}
+	t.variants[g][0].n++
 	for _, c := range s.Columns {
 		if l.Filled(c.Heading) {
 			t.variants[g][0].put(c, spot{kind: ofRow, col: l.At(c.Heading).Col})
@@ -177,7 +185,7 @@ func (t *trail) rows() [][]string {
 			digest = t.r.Files[v.file].SHA256
 		}
 		for _, c := range v.columns {
-			out = append(out, []string{t.r.file(Place{File: v.file}), digest, v.theirSheet, v.sheet, v.part, c.Heading, v.places[c].String()})
+			out = append(out, []string{t.r.file(Place{File: v.file}), digest, v.theirSheet, v.sheet, v.part, c.Heading, v.places[c].String(), strconv.Itoa(v.n)})
 		}
 	}
 	return out

@@ -468,7 +468,7 @@ func (b *book) lists() []list {
 }
 
 // wide is the width of the columns of such a sheet, in characters.
-var wide = map[string]float64{"File": 30, "SHA-256": 66, "Their sheet": 24, "Sheet": 16, "Place": 14, "Part": 16, "Column": 26, "Record": 30, "Typed": 24,
+var wide = map[string]float64{"File": 30, "SHA-256": 66, "Their sheet": 24, "Sheet": 16, "Place": 14, "Rows": 8, "Part": 16, "Column": 26, "Record": 30, "Typed": 24,
 	"Why": 60, "How to mend": 60, "Reason": 60, "Product": 30, "What": 40, "Before": 30, "Now": 30, "Cell": 44, workbook.FromHeading: widthFrom}
 
 // list writes such a sheet.

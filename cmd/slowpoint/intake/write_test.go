@@ -104,13 +104,13 @@ func TestWritesOnlyWhatIsUsed(t *testing.T) {
 		"Steps": {"One row a step, in order within its process", "Process|Step|Stage|Duration (min)|Surroundings|Temperature (°C)|Film coefficient (W/m²·K)|#From",
 			"Lasagne|chill|cool|90|film|3|12.5|Recipes.xlsx › Cook-chill row 17 part chill · ",
 			"Mash|chill|cool|1 h 45 min|film|3|12.5|Recipes.xlsx › Cook-chill row 18 part chill · "},
-		"Origins": {"", "File|SHA-256|Their sheet|Sheet|Part|Column|Place", "map.xlsx|" + b + "||-||-|map",
-			"Recipes.xlsx|" + a + "|Cook-chill|Products||Product|A", "Recipes.xlsx|" + a + "|Cook-chill|Products||Process|A",
-			"Recipes.xlsx|" + a + "|Cook-chill|Products||Shape|map: Constants!E4", "Recipes.xlsx|" + a + "|Cook-chill|Products||Thickness|F",
-			"Recipes.xlsx|" + a + "|Cook-chill|Products||Food|map: Constants!E5", "Recipes.xlsx|" + a + "|Cook-chill|Products||Start temperature|G",
-			"Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Process|A", "Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Stage|map: Constants!E6",
-			"Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Duration|I", "Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Surroundings|map: Constants!E7",
-			"Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Temperature|J", "Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Film coefficient|map: Constants!E8"},
+		"Origins": {"", "File|SHA-256|Their sheet|Sheet|Part|Column|Place|Rows", "map.xlsx|" + b + "||-||-|map",
+			"Recipes.xlsx|" + a + "|Cook-chill|Products||Product|A|2", "Recipes.xlsx|" + a + "|Cook-chill|Products||Process|A|2",
+			"Recipes.xlsx|" + a + "|Cook-chill|Products||Shape|map: Constants!E4|2", "Recipes.xlsx|" + a + "|Cook-chill|Products||Thickness|F|2",
+			"Recipes.xlsx|" + a + "|Cook-chill|Products||Food|map: Constants!E5|2", "Recipes.xlsx|" + a + "|Cook-chill|Products||Start temperature|G|2",
+			"Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Process|A|2", "Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Stage|map: Constants!E6|2",
+			"Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Duration|I|2", "Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Surroundings|map: Constants!E7|2",
+			"Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Temperature|J|2", "Recipes.xlsx|" + a + "|Cook-chill|Steps|chill|Film coefficient|map: Constants!E8|2"},
 		"Not imported": {"", "File|Sheet|Place|Record|Column|Typed|Why|How to mend|#From",
 			"Recipes.xlsx|Cook-chill|F20|Chili|Thickness|thick|is not a number|type a number|Recipes.xlsx › Cook-chill row 20"},
 		"Left out": {"", "File|Sheet|Place|Reason", "Recipes.xlsx|Cook-chill|row 19|total"},
@@ -183,7 +183,7 @@ func TestPartsOfOtherPlaces(t *testing.T) {
 	if row := got["Steps"][3]; !strings.Contains(row, "row 18 part chill (2) · ") {
 		t.Error(row)
 	}
-	want := "Recipes.xlsx|" + digest + "|Cook-chill|Steps|chill (2)|Duration|L"
+	want := "Recipes.xlsx|" + digest + "|Cook-chill|Steps|chill (2)|Duration|L|1"
 	if all := strings.Join(got["Origins"], "\n"); !strings.Contains(all, want) {
 		t.Errorf("%s\nlacks %s", all, want)
 	}

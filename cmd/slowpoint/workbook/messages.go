@@ -38,6 +38,10 @@ var (
 	originsDamaged  = saying{"{1}, so where some values come from cannot be told{2}", "the plan is calculated all the same; import again to have the sheet made anew"}
 	madeHeadless    = saying{"The sheet was made by the import and has no longer a row with all its headings ({1}); it cannot be used", "the plan is calculated all the same; import again to have the sheet made anew"}
 	fromDamaged     = saying{"leads to no origin: it is not as the import wrote it, or the sheet Origins does not know it{1}", "the row is calculated all the same; import again to have it made anew"}
+	rowsGone        = saying{"{1} of {2} that the import made {3} gone: {4}", "leave rows out by the mapping, so that the plan says so, or import again to have them back"}
+	rowsAdded       = saying{"The row was added after the import{1}", "nothing leads from it to the spreadsheets"}
+	rowsCopied      = saying{"The row was copied within the plan after the import: it has the #From of a row above it{1}", "clear its cell of #From"}
+	fromGone        = saying{"The column #From, which the import made, is gone, so that nobody can tell whether rows are gone too", "import again to have the sheet made anew"}
 	rowsNotImported = saying{"{1} of the spreadsheets {2} not imported; see the sheet {3}", "mend them in the spreadsheets and import again"}
 
 	// rows and cells

@@ -5,6 +5,7 @@ import (
 	"hash/fnv"
 	"io"
 	"regexp"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -22,6 +23,7 @@ var MadeSheets = []*Sheet{
 		{Heading: "Part", Help: "of the rows that #From gives it to; blank = all"},
 		{Heading: "Column", Needed: true, Help: "a column of that sheet; - for the mapping"},
 		{Heading: "Place", Needed: true, Help: "F: that column in the row of #From; 12: that row in the column of #From; B+3: column B, 3 rows below the row of #From; B5: that cell; map: Constants!E4: a cell of the mapping; {file}, {sheet}: the name itself; map: the file is the mapping"},
+		{Heading: "Rows", Help: "how many rows of that sheet came from that file, sheet and part; blank if nobody counted"},
 	}},
 	{Name: "Not imported", Help: "Made by the import: what could not be imported, and why", Columns: []*Column{
 		{Heading: "File", Needed: true}, {Heading: "Sheet"}, {Heading: "Place"}, {Heading: "Record"}, {Heading: "Column"}, {Heading: "Typed"},
@@ -52,6 +54,14 @@ type origins struct {
 	places  map[ofColumn]place
 	rows    map[string]*madeRows // by the sheet's name as the user gave it
 	mapping string               // file name of the mapping; "" if it is not told
+	counts  map[ofRows]int       // rows that the import made
+	inOrder []ofRows             // of counts
+}
+
+// ofRows are the rows of a sheet of the plan that one part of one of their sheets made.
+type ofRows struct {
+	label, part int32
+	sheet       *Sheet
 }
 
 // ofColumn is a column of the plan as one part of one of their sheets fills it.
@@ -246,7 +256,7 @@ func (r *reader) readOrigins() {
 	if t == nil {
 		return
 	}
-	o := &origins{mapping: "the mapping", labels: map[string]int32{}, parts: map[string]int32{"": 0}, places: map[ofColumn]place{}, rows: map[string]*madeRows{}}
+	o := &origins{mapping: "the mapping", labels: map[string]int32{}, parts: map[string]int32{"": 0}, places: map[ofColumn]place{}, rows: map[string]*madeRows{}, counts: map[ofRows]int{}}
 	bad, why := formulas{}, ""
 	seen := map[Source]bool{}
 	for i := range t.rows {
@@ -272,11 +282,51 @@ func (r *reader) readOrigins() {
 	}
 	r.plan.origins = o
 	for _, s := range Sheets {
-		if found := r.tables[s.Name]; found != nil && found.place != nil {
-			r.anchor(o, found)
+		switch t := r.tables[s.Name]; {
+		case t != nil && t.place != nil:
+			r.anchor(o, t)
+		case len(r.unread[s.Name]) == 0 && !r.hidden(s):
+			r.gone(o, s, cell.Ref{Sheet: s.Name}, nil, 0)
 		}
 	}
 }
+
+// hidden tells whether the plan has a sheet that is there and not read, which is told.
+func (r *reader) hidden(s *Sheet) bool {
+	return slices.ContainsFunc(r.plan.Sheets, func(name string) bool { return Key(name) == Key(s.Name) }) && r.grids[s.Name] == nil
+}
+
+// gone warns of rows of a sheet that the import made and that are not there any more; found are those that are. So many rows more lead
+// to no origin, which is told.
+func (r *reader) gone(o *origins, s *Sheet, at cell.Ref, found map[ofRows]int, unknown int) {
+	n, of := 0, []string{}
+	for _, k := range o.inOrder {
+		lack := o.counts[k] - found[k]
+		if k.sheet != s || lack <= 0 {
+			continue
+		}
+		n += lack
+		if len(of) == mostGone {
+			of = append(of, "others")
+		}
+		if len(of) > mostGone {
+			continue
+		}
+		from := o.names[k.label]
+		for part, number := range o.parts {
+			if number == k.part && part != "" {
+				from += " part " + part
+			}
+		}
+		of = append(of, fmt.Sprintf("%d of %s", lack, from))
+	}
+	if n > unknown {
+		r.add(rowsGone.problem(at, cell.Warning, "", "", rowCount(n-unknown), s.Name, isAre(n-unknown), and(of)))
+	}
+}
+
+// mostGone is how many of their sheets and parts are named as those that rows are gone of.
+const mostGone = 5
 
 // more tells of the further rows of one kind.
 func (f *formulas) more() string {
@@ -331,6 +381,15 @@ func (o *origins) take(t *madeTable, row *Row) string {
 		o.names, o.files = append(o.names, label), append(o.files, file)
 	}
 	o.places[k] = p
+	if n := get("Rows"); n != "" {
+		made, err := strconv.Atoi(n)
+		if err != nil || made < 1 {
+			return fmt.Sprintf("The number %q under Rows of row %d is no number of rows", n, row.N)
+		}
+		if rows := (ofRows{k.label, k.part, s}); o.counts[rows] == 0 {
+			o.counts[rows], o.inOrder = made, append(o.inOrder, rows)
+		}
+	}
 	return ""
 }
 
@@ -401,23 +460,37 @@ func (r *reader) anchor(o *origins, t *table) {
 			rows.columns[h.col], titles[h.col] = h.column, h.column.Titled(h.unit)
 		}
 	}
-	from, bad, typed := 0, formulas{}, ""
+	from, bad, added, copied, typed := 0, formulas{}, formulas{}, formulas{}, ""
+	found, seen := map[ofRows]int{}, map[string]bool{}
 	var cells []Filled
 	for i := range t.grid.Rows {
 		row := &t.grid.Rows[i]
 		if row.N == t.head {
 			from = fromColumn(row)
 		}
-		if row.N <= t.head || from == 0 || row.at(from).Kind == Blank {
+		if row.N <= t.head || from == 0 {
 			continue
 		}
-		a, sum, ok := o.read(row.at(from).Text)
+		text := row.at(from).Text
+		if row.at(from).Kind == Blank {
+			if filled(row, titles) && !saysSign(t, row) {
+				added.count(t.ref(row.N, 0))
+			}
+			continue
+		}
+		a, sum, ok := o.read(text)
 		if !ok {
 			if bad.n == 0 {
-				typed = row.at(from).Text
+				typed = text
 			}
 			bad.count(t.ref(row.N, from))
 			continue
+		}
+		if seen[text] {
+			copied.count(t.ref(row.N, 0))
+		} else {
+			seen[text] = true
+			found[ofRows{a.label, a.part, t.sheet}]++
 		}
 		cells = cells[:0]
 		for j := range row.Cells {
@@ -435,6 +508,33 @@ func (r *reader) anchor(o *origins, t *table) {
 	if len(rows.anchors) > 0 {
 		o.rows[t.grid.Name] = rows
 	}
+	at := cell.Ref{Sheet: t.grid.Name}
+	if from == 0 && slices.ContainsFunc(o.inOrder, func(k ofRows) bool { return k.sheet == t.sheet }) {
+		r.add(fromGone.problem(at, cell.Warning, "", ""))
+		return
+	}
+	r.gone(o, t.sheet, at, found, bad.n)
+	if added.n > 0 && len(o.counts) > 0 && len(rows.anchors) > 0 {
+		r.add(rowsAdded.problem(added.first, cell.Note, "", "", added.more()))
+	}
+	if copied.n > 0 {
+		r.add(rowsCopied.problem(copied.first, cell.Note, "", "", copied.more()))
+	}
+}
+
+// filled tells whether a row fills a column of the plan, and not only some of the user's own.
+func filled(row *Row, titles map[int]string) bool {
+	return slices.ContainsFunc(row.Cells, func(e Entry) bool { return titles[int(e.Col)] != "" && e.Kind != Blank })
+}
+
+// saysSign tells of the row of the sheet Plan that says the decimal sign, which the import adds of itself.
+func saysSign(t *table, row *Row) bool {
+	item := t.place["Item"]
+	if t.sheet.Name != "Plan" || item == nil {
+		return false
+	}
+	name, _ := SplitHeading(row.at(item.col).Text)
+	return Key(name) == "decimal sign"
 }
 
 // read reads a cell of #From. Names may hold any words, so that of all ways to read it the one counts that names a known sheet.

@@ -391,3 +391,99 @@ func TestWithoutOrigins(t *testing.T) {
 		t.Errorf("sources %v", p.Sources)
 	}
 }
+
+// countedPlan is madePlan with the rows counted, and with a limit that was copied from the mapping.
+func countedPlan() *made {
+	m := madePlan()
+	m.order = append(m.order, "Limits")
+	head := []any{"Limit", "Rule", "Stage", "Applies to", "From (°C)", "Time (min)", "Counting", "Code", "Clause", "Edition", FromHeading}
+	m.rows["Limits"] = [][]any{head}
+	for i, name := range []string{"Hot", "Hotter"} {
+		row := []any{name, "hold", "cook", "all", 70.0 + float64(i), 2.0, "total", "House rules", "4", "2026"}
+		m.rows["Limits"] = append(m.rows["Limits"], append(row, stamped(fmt.Sprintf("Recipes-map.xlsx › Limits row %d", 2+i), head, row)))
+	}
+	for i, row := range m.rows["Origins"] {
+		var n any
+		switch of := fmt.Sprint(row[2], row[3], row[4]); {
+		case i == 0:
+			n = "Rows"
+		case of == "Cook-chillProducts<nil>":
+			n = "2"
+		case of == "Cook-chillStepsoven" || of == "Cook-chillStepsblast":
+			n = 1.0
+		}
+		m.rows["Origins"][i] = append(row, n)
+	}
+	m.rows["Origins"] = append(m.rows["Origins"], []any{"Recipes-map.xlsx", mapDigest, "Limits", "Limits", nil, "Limit", "A", "2"})
+	return m
+}
+
+// TestRowsGone: rows of the import that somebody took out of the plan are told, and rows that somebody added.
+func TestRowsGone(t *testing.T) {
+	drop := func(m *made, sheet string, row int) {
+		m.rows[sheet] = append(m.rows[sheet][:row-1:row-1], m.rows[sheet][row:]...)
+	}
+	for _, c := range []struct {
+		name   string
+		change func(m *made)
+		level  cell.Level
+		want   []string // beside the note of the row of Products that was typed
+	}{
+		{"as it was made", func(m *made) {}, 0, nil},
+		{"a step", func(m *made) { drop(m, "Steps", 3) }, cell.Warning, []string{"Steps: 1 row of Steps that the import made is gone: 1 of Recipes.xlsx › Cook-chill part blast – "}},
+		{"a limit of the mapping", func(m *made) { drop(m, "Limits", 3) }, cell.Warning, []string{"Limits: 1 row of Limits that the import made is gone: 1 of Recipes-map.xlsx › Limits – "}},
+		{"all limits", func(m *made) { drop(m, "Limits", 3); drop(m, "Limits", 2) }, cell.Warning, []string{"Limits: 2 rows of Limits that the import made are gone: 2 of Recipes-map.xlsx › Limits – "}},
+		{"the sheet", func(m *made) { m.order = m.order[:len(m.order)-1] }, cell.Warning, []string{"Limits: 2 rows of Limits that the import made are gone: 2 of Recipes-map.xlsx › Limits – "}},
+		{"products", func(m *made) { drop(m, "Products", 3); drop(m, "Products", 2) }, cell.Warning, []string{"Products: 2 rows of Products that the import made are gone: 2 of Recipes.xlsx › Cook-chill – "}},
+		{"a row moved", func(m *made) {
+			r := m.rows["Limits"]
+			r[1], r[2] = r[2], r[1]
+		}, 0, nil},
+		{"a row copied over another", func(m *made) {
+			again := append([]any(nil), m.rows["Limits"][1]...)
+			again[0] = "Hot again"
+			m.rows["Limits"][2] = again
+		}, cell.Warning, []string{"Limits: 1 row of Limits that the import made is gone: 1 of Recipes-map.xlsx › Limits – ", "Limits row 3 (edited after import; was Recipes-map.xlsx › Limits row 2): The row was copied within the plan after the import"}},
+		{"rows added", func(m *made) {
+			for _, name := range []string{"Own", "Own too"} {
+				m.rows["Limits"] = append(m.rows["Limits"], []any{name, "hold", "cook", "all", 75.0, 2.0, "total", "House rules", "5", "2026"})
+			}
+		}, cell.Note, []string{"Limits row 4: The row was added after the import (and 1 more, down to row 5) – "}},
+		{"the column #From", func(m *made) {
+			for i := range m.rows["Limits"] {
+				m.rows["Limits"][i] = m.rows["Limits"][i][:10]
+			}
+		}, cell.Warning, []string{"Limits: The column #From, which the import made, is gone"}},
+		{"#From spoilt", func(m *made) { m.set("Limits", 3, 11, "from the blue folder") }, cell.Warning, []string{"Limits!K3: \"from the blue folder\" leads to no origin"}},
+		{"the decimal sign, which the import adds", func(m *made) {
+			m.order = append([]string{"Plan"}, m.order...)
+			row := []any{"Site", "Kitchen"}
+			head := []any{"Item", "Value", FromHeading}
+			m.rows["Plan"] = [][]any{head, append(row, stamped("Recipes-map.xlsx › Limits row 9", head, row)), {"Decimal sign", "point"}}
+		}, 0, nil},
+		{"a number of rows in words", func(m *made) { m.set("Origins", 8, 8, "one") }, cell.Warning, []string{"Origins row 8: The number \"one\" under Rows of row 8 is no number of rows"}},
+	} {
+		for _, asFolder := range []bool{false, true} {
+			m := countedPlan()
+			c.change(m)
+			var got []string
+			for _, e := range m.read(t, asFolder).Problems {
+				if at := e.At.String(); !strings.HasPrefix(at, "Products row") {
+					got = append(got, e.Error())
+					if len(got) == 1 && e.Level != c.level {
+						t.Errorf("%s: %v is a %s", c.name, e, e.Level)
+					}
+				} else if e.Level != cell.Note || !strings.Contains(e.Msg, "added after the import") {
+					t.Errorf("%s: %v", c.name, e)
+				}
+			}
+			same := len(got) == len(c.want)
+			for i := range got {
+				same = same && strings.HasPrefix(got[i], c.want[i])
+			}
+			if !same {
+				t.Errorf("%s, folder %v: %q, want %q", c.name, asFolder, got, c.want)
+			}
+		}
+	}
+}
