@@ -415,9 +415,6 @@ func (r *runner) refuse(d *done, first bool) {
 	if !first {
 		return
 	}
-	for i, e := range d.refused {
-		d.refused[i] = r.plan.Locate(e)
-	}
 	r.refused = append(r.refused, report.NotCalculated{At: d.at, Product: d.name, Because: d.refused})
 }
 
@@ -433,6 +430,9 @@ func (r *runner) one(i int, reports bool) (d *done) {
 	d.product, d.err = r.calculate(p)
 	if errors.As(d.err, &d.refused) { // found while it was calculated
 		d.err = nil
+		for j, e := range d.refused {
+			d.refused[j] = p.AsTyped(r.plan.Locate(e))
+		}
 		return d
 	}
 	if d.err != nil || !reports || r.options.noPDF || r.options.onePDF {

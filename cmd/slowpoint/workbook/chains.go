@@ -126,7 +126,7 @@ func (r *reader) ask(p *product, pr *process) {
 		unsure[t.grid.Name] = true
 	}
 	for _, e := range model.Check(p.Product.Product, p.Steps) {
-		e = r.plan.Locate(e)
+		e = p.AsTyped(r.plan.Locate(e))
 		if told[row{e.At.Sheet, e.At.Row}] || unsure[e.At.Sheet] {
 			continue
 		}

@@ -2,6 +2,9 @@
 package workbook
 
 import (
+	"strconv"
+	"strings"
+
 	"slowpoint/model"
 	"slowpoint/model/cell"
 	"slowpoint/rules"
@@ -48,6 +51,51 @@ func (p *Product) Readings() []cell.Reading {
 		}
 	}
 	return out
+}
+
+// AsTyped puts what the user typed, with its unit, in the place of the computed value that a finder of the model told of the cell. Of a
+// course the cell holds the name; the temperature of its row goes into the message.
+func (p *Product) AsTyped(e cell.Error) cell.Error {
+	if e.Typed == "" || e.At.Col == 0 {
+		return e
+	}
+	course := "" // the temperature of the course, as typed
+	var found *echo
+	for _, part := range p.readings {
+		for i := range part {
+			for k := range part[i].list {
+				c := &part[i].list[k]
+				switch at := (cell.Ref{Sheet: part[i].sheet, Row: part[i].row, Col: int(c.col)}); {
+				case c.blank:
+				case at == e.At:
+					found = c
+				case e.Field == "Course" && c.column == courseTemperature && c.used == degrees(e.Typed):
+					course = c.text
+				}
+			}
+		}
+	}
+	if found == nil || found.text == e.Typed {
+		return e
+	}
+	if course != "" {
+		e.Msg = "has " + course + ", and " + e.Msg
+	} else if found.column.Quantity == nil {
+		return e
+	}
+	e.Typed = found.text
+	return e
+}
+
+var courseTemperature = SheetNamed("Courses").Column("Temperature")
+
+// degrees writes a temperature of the model, "-18.88888888888889 °C", as the echo does.
+func degrees(s string) string {
+	x, err := strconv.ParseFloat(strings.TrimSuffix(s, " °C"), 64)
+	if err != nil {
+		return s
+	}
+	return short(x) + " °C"
 }
 
 // echoes are the values of one row as they were taken, in half the space of cell.Reading: a large plan has a million of them.
