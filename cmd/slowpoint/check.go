@@ -506,7 +506,7 @@ func (r *runner) counts() string {
 	if k := len(r.head.NotCalculated); k > 0 {
 		s += fmt.Sprintf(", %d not calculated", k)
 	}
-	return s
+	return s + notImported(r.plan)
 }
 
 // adviceNotMet tells the limits of level advice that a product does not meet; they do not weigh in its verdict.
@@ -527,7 +527,7 @@ func weigh(v rules.Verdict) int {
 
 // exit gives the exit code of the run.
 func (r *runner) exit() error {
-	if r.plan.Problems.Faults() > 0 || len(r.head.NotCalculated) > 0 {
+	if r.plan.Problems.Faults() > 0 || len(r.head.NotCalculated) > 0 || r.plan.NotImported > 0 {
 		return &failure{code: exitInput}
 	}
 	if len(r.rows) == 0 {

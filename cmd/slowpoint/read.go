@@ -22,7 +22,7 @@ func readCommand() *cobra.Command {
 			}
 			understood(cmd.OutOrStdout(), plan)
 			tellProblems(cmd.OutOrStdout(), plan.Problems)
-			if plan.Problems.Faults() > 0 {
+			if plan.Problems.Faults() > 0 || plan.NotImported > 0 {
 				return &failure{code: exitInput}
 			}
 			return nil
@@ -45,7 +45,7 @@ func onePlan(least int) cobra.PositionalArgs {
 
 // understood says what a plan holds.
 func understood(w io.Writer, p *workbook.Plan) {
-	fmt.Fprintf(w, "%s: %s can be calculated, %s cannot; %s\n", p.Name, count(len(p.Products), "product"), count(len(p.NotCalculated), "product"), count(len(p.Limits), "limit"))
+	fmt.Fprintf(w, "%s: %s can be calculated, %s cannot; %s%s\n", p.Name, count(len(p.Products), "product"), count(len(p.NotCalculated), "product"), count(len(p.Limits), "limit"), notImported(p))
 	for i := range p.Products {
 		q := &p.Products[i]
 		steps := ""
@@ -60,6 +60,14 @@ func understood(w io.Writer, p *workbook.Plan) {
 	for _, n := range p.NotCalculated {
 		fmt.Fprintf(w, "  %s: not calculated (%s)\n", n.Product, count(n.Because.Faults(), "error"))
 	}
+}
+
+// notImported tells, behind a count of products, of the rows that the import of the plan could not take; "" if there are none.
+func notImported(p *workbook.Plan) string {
+	if p.NotImported == 0 {
+		return ""
+	}
+	return ", and " + count(p.NotImported, "row") + " of the spreadsheets not imported"
 }
 
 // most is how many problems are told one by one.
