@@ -9,6 +9,7 @@ import (
 
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model/cell"
+	"slowpoint/model/unit"
 )
 
 func readCommand() *cobra.Command {
@@ -55,11 +56,19 @@ func understood(w io.Writer, p *workbook.Plan) {
 			}
 			steps += fmt.Sprintf("%s %s", q.Steps[k].Name, minutes(q.Steps[k].DurationS))
 		}
-		fmt.Fprintf(w, "  %s: %s, %s from %.4g °C; %s\n", q.Name, q.Shape.Name, q.Product.Food.Name, q.StartC, steps)
+		fmt.Fprintf(w, "  %s: %s, %s from %s; %s\n", q.Name, q.Shape.Name, q.Product.Food.Name, ownScale(q.StartC, p.Fahrenheit), steps)
 	}
 	for _, n := range p.NotCalculated {
 		fmt.Fprintf(w, "  %s: not calculated (%s)\n", n.Product, count(n.Because.Faults(), "error"))
 	}
+}
+
+// ownScale writes a temperature, °C, in the scale that the plan shows temperatures in.
+func ownScale(c float64, fahrenheit bool) string {
+	if fahrenheit {
+		return fmt.Sprintf("%.4g °F", unit.Temperature.Unit("°F").Out(c))
+	}
+	return fmt.Sprintf("%.4g °C", c)
 }
 
 // notImported tells, behind a count of products, of the rows that the import of the plan could not take; "" if there are none.
