@@ -22,7 +22,7 @@ var MadeSheets = []*Sheet{
 		{Heading: "Sheet", Needed: true, Help: "a sheet of this plan; - for the mapping"},
 		{Heading: "Part", Help: "of the rows that #From gives it to; blank = all"},
 		{Heading: "Column", Needed: true, Help: "a column of that sheet; - for the mapping"},
-		{Heading: "Place", Needed: true, Help: "F: that column in the row of #From; 12: that row in the column of #From; B+3: column B, 3 rows below the row of #From; B5: that cell; map: Constants!E4: a cell of the mapping; {file}, {sheet}: the name itself; map: the file is the mapping"},
+		{Heading: "Place", Needed: true, Help: "F: that column in the row of #From; 12: that row in the column of #From; B+3: column B, 3 rows below the row of #From; B5: that cell; map: Constants!E4: a cell of the mapping; {file}, {sheet}: the name itself; by Words behind any of them: a word of the mapping stands for what is there; map: the file is the mapping"},
 		{Heading: "Rows", Help: "how many rows of that sheet came from that file, sheet and part; blank if nobody counted"},
 	}},
 	{Name: "Not imported", Help: "Made by the import: what could not be imported, and why", Columns: []*Column{
@@ -75,6 +75,7 @@ type place struct {
 	kind     placeKind
 	row, col int32
 	text     string // of a cell of the mapping
+	byWords  bool   // a word of the mapping stands for what the cell holds
 }
 
 type placeKind uint8
@@ -141,6 +142,15 @@ func (o *origins) cellOf(a anchor, c *Column) string {
 			return ""
 		}
 	}
+	at := o.at(a, p)
+	if at != "" && p.byWords {
+		at += ", by a word of the mapping"
+	}
+	return at
+}
+
+// at is the cell of a place for a row; "" if the row has none such.
+func (o *origins) at(a anchor, p place) string {
 	name := o.names[a.label]
 	row, col := p.row, p.col
 	switch p.kind {
@@ -420,6 +430,14 @@ var (
 
 // placeOf reads the column Place of Origins.
 func placeOf(s string) (place, bool) {
+	bare, byWords := strings.CutSuffix(s, " by Words")
+	p, ok := barePlace(bare)
+	p.byWords = byWords
+	return p, ok
+}
+
+// barePlace reads a place without what may stand behind it.
+func barePlace(s string) (place, bool) {
 	if rest, ok := strings.CutPrefix(s, "map:"); ok {
 		return place{kind: ofMapping, text: strings.TrimSpace(rest)}, strings.TrimSpace(rest) != ""
 	}

@@ -93,6 +93,8 @@ func madePlan() *made {
 			{"Recipes.xlsx", recipesDigest, "Cook-chill", "Products", nil, "Thickness", "F"},
 			{"Recipes.xlsx", recipesDigest, "Cook-chill", "Products", nil, "Process", "{sheet}"},
 			{"Recipes.xlsx", recipesDigest, "Cook-chill", "Products", nil, "Shape", "map: Constants!E4"},
+			{"Recipes.xlsx", recipesDigest, "Cook-chill", "Products", nil, "Food", "C by Words"},
+			{"Cards.xlsx", cardsDigest, "Loaf", "Products", nil, "Food", "B7 by Words"},
 			{"Recipes.xlsx", recipesDigest, "Cook-chill", "Steps", "oven", "Duration", "J"},
 			{"Recipes.xlsx", recipesDigest, "Cook-chill", "Steps", "blast", "Duration", "M"},
 			{"Recipes.xlsx", recipesDigest, "Cook-chill", "Steps", nil, "Process", "A"},
@@ -197,7 +199,9 @@ func TestOrigins(t *testing.T) {
 			{"a column of theirs", "Products D2", "Recipes.xlsx › Cook-chill!F17"},
 			{"the next row", "Products D3", "Recipes.xlsx › Cook-chill!F18"},
 			{"the row", "Products -2", "Recipes.xlsx › Cook-chill row 17"},
-			{"a column that is not told", "Products F2", "Recipes.xlsx › Cook-chill row 17"},
+			{"a column that is not told", "Products G2", "Recipes.xlsx › Cook-chill row 17"},
+			{"by a word", "Products F2", "Recipes.xlsx › Cook-chill!C17, by a word of the mapping"},
+			{"a cell by a word", "Products F6", "Cards.xlsx › Loaf!B7, by a word of the mapping"},
 			{"a constant", "Products C2", "Recipes-map.xlsx › Constants!E4"},
 			{"the sheet's name", "Products B3", "Recipes.xlsx › Cook-chill"},
 			{"transposed, the sheet named like a row", "Products E4", "Recipes.xlsx › my row 5 part 2!F12"},
@@ -247,7 +251,7 @@ func TestOriginsOfReadings(t *testing.T) {
 	}
 	for at, want := range map[string]string{
 		"Products!D2": "Products!D2 (Recipes.xlsx › Cook-chill!F17)",
-		"Products!F2": "Products!F2", // a column that the sheet Origins does not tell
+		"Products!G2": "Products!G2", // a column that the sheet Origins does not tell
 		"Steps!D3":    "Steps!D3 (Recipes.xlsx › Cook-chill!M17)",
 		"Foods!B2":    "Foods!B2",
 	} {
