@@ -24,7 +24,7 @@ type Value struct {
 	Number bool   // Text is a plain number in Unit
 	Unit   string // of a dimensional column: that of Text
 	At     Place  // their cell; the zero Sheet, Row and Col for a constant
-	Const  string // for a constant or a word: its cell in the mapping, "Constants!E4"; "" otherwise
+	Const  string // for a constant or the meaning of a word: its cell in the mapping, "Constants!E4"; "" otherwise
 }
 
 // Made is one row of the plan.

@@ -124,14 +124,14 @@ func (o *opened) eachColumn(use func(record)) {
 			if o.ownName(i) {
 				continue
 			}
-			o.cells[i] = found{e: &blank, row: o.lines[i], col: col}
+			o.cells[i] = found{e: &blank, row: o.lines[i], col: col, lacks: !o.has(i)}
 			if rows[i] != nil {
 				o.cells[i].e = rows[i].At(col)
 			}
 		}
 		rec := record{at: Place{File: o.file, Sheet: o.grid.Name, Col: col}}
 		if o.grid.HiddenCols[col] {
-			rec.hidden = "The column"
+			rec.hidden = "Column " + cell.ColumnName(col)
 		}
 		use(rec)
 	}
@@ -148,7 +148,7 @@ func (o *opened) starts() []spotAt {
 		}
 		for c := range row.Cells {
 			e := &row.Cells[c]
-			if e.Kind != workbook.Text || workbook.Key(e.Text) != o.src.word {
+			if e.Kind != workbook.Text || headingKey(e.Text) != o.src.word {
 				continue
 			}
 			if last == row.N {
@@ -166,7 +166,7 @@ func (o *opened) starts() []spotAt {
 
 func (o *opened) eachBlock(use func(record)) {
 	starts := o.starts()
-	if len(starts) == 0 && !o.told {
+	if len(starts) == 0 && !o.told && !o.hidden {
 		o.told = true
 		o.refuse(noBlock.problem(o.src.line.At("Heading"), cell.Fault, "", text(o.src.line, "Heading"), o.label))
 	}

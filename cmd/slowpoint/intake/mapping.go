@@ -5,6 +5,7 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+	"unicode"
 
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model/cell"
@@ -82,8 +83,10 @@ type constant struct {
 
 // rule is a row of Leave out.
 type rule struct {
+	line               *workbook.Line
 	where              int
 	when, word, reason string // word by key
+	used               bool   // some record is as it says
 }
 
 // target is a row of the plan that each record may make.
@@ -134,6 +137,7 @@ func understand(t *workbook.Tables) *Mapping {
 	m.readSources()
 	m.readWords()
 	m.readColumns()
+	m.questions()
 	m.readConstants()
 	m.readRules()
 	for _, s := range m.sources {
@@ -233,7 +237,7 @@ func (m *Mapping) readHeads(s *source) {
 			m.blame(s, s.line, "Heading", typed, headDash)
 		}
 	case blockLayout:
-		s.word = workbook.Key(typed)
+		s.word = headingKey(typed)
 	default:
 		parts := headRange.FindStringSubmatch(typed)
 		if parts == nil {
@@ -403,6 +407,8 @@ func (m *Mapping) readColumns() {
 		if list := text(l, "Words"); list != "" {
 			if c.words = m.lists[workbook.Key(list)]; c.words == nil {
 				m.blame(s, l, "Words", list, listUnknown, workbook.Meant(list, m.listNames()))
+			} else {
+				c.words.used = true
 			}
 		}
 		if !ok || !placed || c.where < 0 {
@@ -560,7 +566,7 @@ func (m *Mapping) readRules() {
 		if s == nil {
 			continue
 		}
-		r := &rule{when: l.Choice("When"), word: workbook.Key(text(l, "Word")), where: -1}
+		r := &rule{line: l, when: l.Choice("When"), word: workbook.Key(text(l, "Word")), where: -1}
 		reason, ok := m.needed(s, l, "Reason")
 		r.reason = reason
 		theirs, ok2 := m.needed(s, l, "Theirs")
@@ -661,16 +667,21 @@ func (w *where) numbers(layout string) bool {
 	return false
 }
 
-// headingKey makes a heading comparable; a group and its heading may be joined by › or >.
+// colonless is a heading or label without the colon that ends it, which is no part of it.
+func colonless(s string) string {
+	return strings.TrimRightFunc(s, func(c rune) bool { return c == ':' || c == '：' || unicode.IsSpace(c) })
+}
+
+// headingKey makes a heading comparable; a group and its heading may be joined by › or >. A colon at the end of either is no part of it.
 func headingKey(s string) string {
-	k := workbook.Key(s)
+	k := colonless(workbook.Key(s))
 	if strings.Contains(k, ">") {
 		k = strings.ReplaceAll(k, ">", "›")
 	}
 	if strings.Contains(k, "›") {
 		parts := strings.Split(k, "›")
 		for i := range parts {
-			parts[i] = strings.TrimSpace(parts[i])
+			parts[i] = colonless(strings.TrimSpace(parts[i]))
 		}
 		k = strings.Join(parts, " › ")
 	}

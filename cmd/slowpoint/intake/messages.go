@@ -58,6 +58,8 @@ var (
 	wordTwice      = saying{"fills this place twice; the first is in row {1}", "keep one of the rows"}
 	wordNever      = saying{"never occurs in the column that uses the list", "correct the word, or take the row out"}
 	listNever      = saying{"is a list that no confirmed row of Columns uses", "name it under Words, or take its rows out"}
+	unanswered     = saying{"is a question of the proposal that nobody answered", "type what the plan shall say; a blank leaves the cell blank"}
+	ruleNever      = saying{"The rule ({1}) fits no record", "correct When and Word, or take the row out"}
 	wordRefused    = saying{"stands for {1} in the mapping ({2}), which cannot be used: {3}", "mend the mapping: {4}"}
 
 	// their files and sheets
@@ -71,8 +73,11 @@ var (
 	hiddenSheet   = saying{"The sheet is hidden and is not read", "unhide it if it is to be imported"}
 	sheetEmpty    = saying{"The sheet is empty", ""}
 	headRowBlank  = saying{"The sheet has no headings in {1}, where the mapping ({2}) looks for them", "correct Heading in the sheet Sources"}
+	headMoved     = saying{"The headings of this mapping stand in {2} of {1}, and Sources says {3}", "correct Heading, or take out what was inserted before them"}
 	headUnknown   = saying{"is no heading of {1}{2}", "correct the name, or name the place by its letter or number as {3}"}
 	labelUnknown  = saying{"is no label of {1}{2}", "correct the name, or name the place as {3}"}
+	labelNowhere  = saying{"is no label of any sheet of the source{1}", "correct the name, or name the place as {2}"}
+	labelLacks    = saying{"is a label that {1} of {2} do not have ({3}); it is blank there", "add the label there, unless it has nothing to say"}
 	headTwice     = saying{"is there twice in {1}: {2}", "name the place itself, as {3}"}
 	labelTwice    = saying{"The label {1} is there twice in the record, in {2} and {3}", "name the place itself in the mapping, as {4}"}
 	headNoUnit    = saying{"has no unit; {1} needs one", "fill Unit in {2} of the mapping, or put the unit in brackets after the heading"}
@@ -86,6 +91,8 @@ var (
 	linksUsed     = saying{"The cell{1} a link to another workbook; the result that was stored last is used", "look whether it is up to date"}
 	protected     = saying{"The sheet is protected; it is read all the same", ""}
 	writing       = saying{"{1}", "look at its letters; save it as CSV UTF-8 if they are wrong"}
+	noRecords     = saying{"The list has no rows below its headings", "fill it, or take its source out of the mapping"}
+	outside       = saying{"{1} outside First and Last of the mapping ({2}) and not read: {3}", "correct First or Last, or take them out if they are no records; a rule of the sheet Leave out takes out what is none"}
 	blocksBeside  = saying{"begins a second block in this row; the first begins in {1}", "blocks must stand below each other; name the places of each in a source of its own, or part them"}
 	noBlock       = saying{"begins no block of {1}", "correct Heading in the sheet Sources: the whole cell that starts each block"}
 
@@ -102,6 +109,8 @@ var (
 	filledTwice   = saying{"{1} is filled twice, by {2} and by {3}", "let one of them fill it"}
 	nothingFilled = saying{"None of the cells that are mapped is filled", "leave such records out by a rule of the sheet Leave out, or fill them"}
 	productTwice  = saying{"is there twice; the first is {1}", "give each product a name of its own, or leave one out"}
+	partLacks     = saying{"{1} has nothing filled for {2}, which {3}; it makes no row of {4}", "fill its cells, unless there is none"}
+	partsLack     = saying{"{1} records have nothing filled for {2}, which {3}; they make no row of {4}: {5}", "fill their cells, unless there is none"}
 	stepOther     = saying{"{1} differs from {2}, which makes the same row of the plan ({3})", "let both say the same, or give each its own name"}
 	routeOther    = saying{"is a process that is made here of {1}, but in {2} of {3}", "fill the same steps in all records of a process, or give each kind a process of its own"}
 )

@@ -23,6 +23,7 @@ type importer struct {
 	fresh    []string         // keys of made that the record at hand added
 	routes   map[string]route // of each process that records name, by key
 	labels   map[*workbook.Grid]string
+	shares   map[*target]*share // of each row that records may make
 
 	// of the source at hand
 	values []Value // of each slot
@@ -38,7 +39,7 @@ func (m *Mapping) Import(files []*workbook.Spreadsheet) *Result {
 	for _, f := range files {
 		r.Files = append(r.Files, File{f.Name, f.SHA256})
 	}
-	im := &importer{m: m, files: files, r: r, products: map[string]Place{}, made: map[string]int{}, routes: map[string]route{}, labels: map[*workbook.Grid]string{}}
+	im := &importer{m: m, files: files, r: r, products: map[string]Place{}, made: map[string]int{}, routes: map[string]route{}, labels: map[*workbook.Grid]string{}, shares: map[*target]*share{}}
 	if m.lost {
 		r.Problems = im.everything()
 		return r
@@ -55,9 +56,18 @@ func (m *Mapping) Import(files []*workbook.Spreadsheet) *Result {
 				if o.file == f {
 					o.each(func(rec record) { im.record(o, rec, &r.Counts[i]) })
 					o.tell()
+					o.leftOutside()
+					if o.records == 0 && o.fault == nil && s.fault == nil && !o.hidden && len(o.grid.Rows) > 0 {
+						im.problems.Add(noRecords.problem(cell.Ref{Sheet: o.label}, cell.Warning, "", ""))
+					}
 				}
 			}
 		}
+	}
+	for i, s := range m.sources {
+		im.lackingLabels(s, im.opened[i])
+		im.lackingParts(s)
+		im.unusedRules(s, im.opened[i])
 	}
 	im.unusedWords()
 	r.Problems = im.everything()
@@ -109,7 +119,7 @@ func (im *importer) find() {
 	read := map[*workbook.Grid]bool{}
 	for _, s := range im.m.sources {
 		var list []*opened
-		file, hidden := false, false
+		file := false
 		var names []string
 		for f, sheet := range im.files {
 			if !matches(s.file, sheet.Name) {
@@ -120,18 +130,20 @@ func (im *importer) find() {
 				switch {
 				case !matches(s.sheet, g.Name) || g.Name == "" && s.sheet != "":
 					names = append(names, g.Name)
-				case g.Hidden && s.sheet != "" && !strings.Contains(s.sheet, "*"):
-					im.problems.Add(sheetHidden.problem(s.line.At("Sheet"), cell.Fault, "Sheet", s.sheet, sheet.Name))
-					hidden = true
-				case !g.Hidden:
+				case g.Hidden && (s.sheet == "" || len(g.Rows) == 0 && strings.Contains(s.sheet, "*")):
+				default:
+					if g.Hidden && !strings.Contains(s.sheet, "*") {
+						im.problems.Add(sheetHidden.problem(s.line.At("Sheet"), cell.Fault, "Sheet", s.sheet, sheet.Name))
+					}
 					read[g] = true
 					list = append(list, im.open(s, f, g))
 				}
 			}
 		}
+		im.lacksLabels(s, list)
 		im.opened = append(im.opened, list)
 		switch {
-		case len(list) > 0 || hidden || s.fault != nil && (s.name == "" || s.layout == ""):
+		case len(list) > 0 || s.fault != nil && (s.name == "" || s.layout == ""):
 		case !file && s.file != "":
 			var given []string
 			for _, f := range im.files {
@@ -169,7 +181,7 @@ func (im *importer) unread(read map[*workbook.Grid]bool) {
 		any := false
 		for _, g := range file.Sheets {
 			any = any || read[g]
-			if g.Hidden {
+			if g.Hidden && !read[g] {
 				im.problems.Add(hiddenSheet.problem(cell.Ref{Sheet: im.label(f, g)}, cell.Warning, "", ""))
 			}
 		}
@@ -192,7 +204,7 @@ func (im *importer) decimals(file int) {
 	var unsure []*opened
 	for _, list := range im.opened {
 		for _, o := range list {
-			if o.file != file || o.decimal != unit.Unsure || o.fault != nil {
+			if o.file != file || o.decimal != unit.Unsure || o.fault != nil || o.hidden {
 				continue
 			}
 			unsure = append(unsure, o)
@@ -235,15 +247,18 @@ func (im *importer) begin(s *source) {
 // record makes the rows of one record, leaves it out, or tells why it cannot be imported.
 func (im *importer) record(o *opened, rec record, n *Count) {
 	n.Read++
+	o.records++
 	if f, more := o.src.fault, o.src.more; f != nil || o.fault != nil {
 		if f == nil {
 			f, more = o.fault, 0
 		}
 		im.refuseAll(o, rec, f, more)
+		clear(im.filled)
+		im.r.Not[len(im.r.Not)-1].Product = o.product(im)
 		n.Not++
 		return
 	}
-	if reason, out := o.leftOut(); out {
+	if reason, out := o.leftOut(); out && !o.hidden {
 		im.r.Left = append(im.r.Left, Left{rec.at, reason})
 		n.LeftOut++
 		return
@@ -255,6 +270,9 @@ func (im *importer) record(o *opened, rec record, n *Count) {
 	for i := range im.some {
 		im.some[i] = false
 	}
+	if o.hidden {
+		rec.hidden = "The sheet"
+	}
 	if rec.hidden != "" {
 		im.refuse(o, rec, rec.at, nil, "", hiddenRow, rec.hidden)
 	} else {
@@ -265,6 +283,8 @@ func (im *importer) record(o *opened, rec record, n *Count) {
 	}
 	if len(im.r.Not) == from {
 		n.Imported++
+		o.noteLacks(im.r.Where(rec.at))
+		im.noteShares(o, rec)
 		return
 	}
 	n.Not++
@@ -315,17 +335,20 @@ func (im *importer) refuseAll(o *opened, rec record, f *cell.Error, more int) {
 // leftOut holds the record against the rules of the mapping.
 func (o *opened) leftOut() (reason string, out bool) {
 	for _, r := range o.src.rules {
-		if o.src.wheres[r.where].kind == byAnything {
-			if o.anyCell(r.fits) {
-				return r.reason, true
-			}
+		if out && r.used {
 			continue
 		}
-		if r.fits(o.cells[r.where].e) {
-			return r.reason, true
+		fits := false
+		if o.src.wheres[r.where].kind == byAnything {
+			fits = o.anyCell(r.fits)
+		} else {
+			fits = r.fits(o.cells[r.where].e)
+		}
+		if r.used = r.used || fits; fits && !out {
+			reason, out = r.reason, true
 		}
 	}
-	return "", false
+	return reason, out
 }
 
 // fits tells whether a cell is as the rule says.
@@ -395,6 +418,7 @@ func (o *opened) usable(im *importer, rec record, i int, f *found, at Place, c *
 		return false
 	}
 	switch {
+	case f.e.Kind == workbook.Broken: // an error of the spreadsheet: no result is used
 	case f.e.Linked:
 		o.count(linkedCells, o.src.mapped[i].where, o.ref(f.row, f.col), "", "")
 	case f.e.Formula && f.e.Kind != workbook.NoStored:
@@ -450,8 +474,8 @@ func (im *importer) notTaken(o *opened, rec record, h *headUnit, m *mapped, at P
 		if !h.told {
 			h.told = true
 			head := o.heads[m.where]
-			if h.heading != "" && head.text == "" {
-				head = heading{h.heading, o.ref(at.Row, at.Col)}
+			if f := &o.cells[m.where]; h.heading != "" && head.text == "" {
+				head = heading{h.heading, o.ref(f.labelAt.row, f.labelAt.col)}
 			}
 			if head.text == "" {
 				head.at = m.line.At("Unit")
@@ -664,7 +688,7 @@ func (im *importer) complete(o *opened, rec record, t *target) {
 			im.values[t.from+i], im.filled[t.from+i] = v, true
 			continue
 		}
-		if im.told(rec, c, t) {
+		if im.told(rec, c.Heading) || o.src.standsIn(t, c) && (im.told(rec, "Product") || im.told(rec, "Process")) {
 			continue
 		}
 		im.missing(o, rec, t.slots[i], c)
@@ -672,9 +696,9 @@ func (im *importer) complete(o *opened, rec record, t *target) {
 }
 
 // told tells whether a fault of the record in a column was told already.
-func (im *importer) told(rec record, c *workbook.Column, t *target) bool {
+func (im *importer) told(rec record, heading string) bool {
 	for i := len(im.r.Not) - 1; i >= 0 && im.r.Not[i].Record == rec.at; i-- {
-		if im.r.Not[i].Column == c.Heading {
+		if im.r.Not[i].Column == heading {
 			return true
 		}
 	}
@@ -837,10 +861,7 @@ func (o *opened) tell() {
 func (im *importer) listsUnread() map[*wordList]bool {
 	out := map[*wordList]bool{}
 	for i, s := range im.m.sources {
-		lost := s.fault != nil || len(im.opened[i]) == 0
-		for _, o := range im.opened[i] {
-			lost = lost || o.fault != nil
-		}
+		lost := im.unsure(s, im.opened[i])
 		for _, m := range s.mapped {
 			if lost && m.words != nil {
 				out[m.words] = true
@@ -850,15 +871,31 @@ func (im *importer) listsUnread() map[*wordList]bool {
 	return out
 }
 
-// unusedWords warns of words that never occur and of lists that nobody uses.
-func (im *importer) unusedWords() {
-	for _, s := range im.m.sources {
-		for _, m := range s.mapped {
-			if m.words != nil {
-				m.words.used = true
-			}
+// unsure tells whether nobody knows what stands in the records of a source: some were not looked at, or there are none.
+func (im *importer) unsure(s *source, list []*opened) bool {
+	n := 0
+	for _, o := range list {
+		if n += o.records; o.fault != nil || o.hidden {
+			return true
 		}
 	}
+	return s.fault != nil || n == 0
+}
+
+// unusedRules warns of rules that fit no record.
+func (im *importer) unusedRules(s *source, list []*opened) {
+	if im.unsure(s, list) {
+		return
+	}
+	for _, r := range s.rules {
+		if !r.used {
+			im.problems.Add(ruleNever.problem(r.line.At("Theirs"), cell.Warning, "", "", strings.TrimSpace(s.wheres[r.where].text+" "+r.when+" "+text(r.line, "Word"))))
+		}
+	}
+}
+
+// unusedWords warns of words that never occur and of lists that nobody uses.
+func (im *importer) unusedWords() {
 	unread := im.listsUnread()
 	seen := map[*wordList]bool{}
 	for _, l := range im.m.t.Lines("Words") {

@@ -278,6 +278,52 @@ func TestBlockFaults(t *testing.T) {
 	}
 }
 
+// TestErrorValueOfFormula: of a formula that gives an error no stored result is used, and none is said to be.
+func TestErrorValueOfFormula(t *testing.T) {
+	g := gridOf("L", strings.Replace(dishes, "| 160 |", "| #REF! |", 1))
+	e := &g.Rows[1].Cells[3]
+	for _, linked := range []bool{false, true} {
+		e.Formula, e.Linked = true, linked
+		r := mappingOf(dishMap).Import([]*workbook.Spreadsheet{fileOf("S.xlsx", g)})
+		if len(r.Not) != 1 || r.Not[0].At.short() != "D2" || len(r.Problems) > 0 {
+			t.Errorf("linked %t: %v\n%s", linked, r.Not, problemLines(r))
+		}
+	}
+}
+
+// TestWordsOrigin: a value that a word stands for leads to the cell of the word, and says that the mapping gave it.
+func TestWordsOrigin(t *testing.T) {
+	r := mappingOf(dishMap).Import([]*workbook.Spreadsheet{fileOf("S.xlsx", gridOf("L", dishes))})
+	trail := newTrail(r)
+	for i := range r.Made {
+		trail.ofMade(&r.Made[i])
+	}
+	got := map[string]string{}
+	for _, row := range trail.rows() {
+		got[row[5]] += row[6] + ";"
+	}
+	for column, want := range map[string]string{"Product": "A;", "Shape": "B by Words;", "Thickness": "B by Words;", "Start temperature": "C;", "Stage": "map: Constants!E2;"} {
+		if !strings.HasPrefix(got[column], want) {
+			t.Errorf("%s comes from %q, want %q", column, got[column], want)
+		}
+	}
+}
+
+// TestForgottenCells: a record whose cells of a part are all blank is told, unless another record makes the step of its process.
+func TestForgottenCells(t *testing.T) {
+	text := strings.Replace(dishMap, "S | Tin | Products", "S | Way | Products | Process | | | | yes\nS | Tin | Products", 1)
+	for _, c := range []struct{ name, way, want string }{{"a process of its own", "V", "S.xlsx › L!D3: Hash has nothing filled for cook, which another of the source has"}, {"a shared process", "w", ""}} {
+		t.Run(c.name, func(t *testing.T) {
+			grid := "Dish | Tin | Start | Oven (°C) | Cook | Way\nMash | low | 5 | 160 | 45 | W\nHash | round | 6 | | | " + c.way
+			r := mappingOf(text).Import([]*workbook.Spreadsheet{fileOf("S.xlsx", gridOf("L", grid))})
+			told := problemLines(r)
+			if !strings.Contains(told, c.want) || strings.Contains(told, "nothing filled") != (c.want != "") || r.Counts[0].Imported != 2 {
+				t.Errorf("want %q in\n%s%v", c.want, told, r.Not)
+			}
+		})
+	}
+}
+
 // TestSharedProcess: rows of one process that several records make are made once if they say the same, and refused if they do not.
 func TestSharedProcess(t *testing.T) {
 	text := strings.Replace(dishMap, "S | Tin | Products", "S | Way | Products | Process | | | | yes\nS | Tin | Products", 1)

@@ -67,7 +67,7 @@ var OwnSheets = []*workbook.Sheet{
 	{Name: "Leave out", Help: "Records that are no products", Columns: []*workbook.Column{
 		{Heading: "Source", Needed: true, Help: "a source of the sheet Sources"},
 		{Heading: "Theirs", Needed: true, Help: "as in Columns; any = any cell of the record"},
-		{Heading: "When", Needed: true, Choices: []string{whenIs, whenBlank, whenFilled, whenStarts, whenEnds, whenStruck}, Help: "what the cell must be"},
+		{Heading: "When", Needed: true, Choices: []string{whenIs, whenBlank, whenFilled, whenStarts, whenEnds, whenStruck}, Help: "what the cell must be: is, is blank, is filled, starts with, ends with, struck through"},
 		{Heading: "Word", Help: "for is, starts with, ends with"},
 		{Heading: "Reason", Needed: true, Help: "counted and listed by it"},
 	}},

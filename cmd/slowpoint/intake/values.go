@@ -104,7 +104,7 @@ func stored(s string) string {
 func headingUnit(q *unit.Quantity, heading string) (u *unit.Unit, inside string) {
 	parts := strings.Split(heading, "›")
 	for i := len(parts) - 1; i >= 0; i-- {
-		part := strings.TrimSpace(parts[i])
+		part := colonless(strings.TrimSpace(parts[i]))
 		name, in := workbook.SplitHeading(part)
 		if inside == "" {
 			inside = in

@@ -13,7 +13,7 @@ type wordList struct {
 	line    *workbook.Line // its first row
 	inOrder []*word
 	byKey   map[string]*word
-	used    bool // some column uses it
+	used    bool // some confirmed column names it
 }
 
 // word is one of theirs with everything that it stands for.
@@ -99,7 +99,7 @@ func (m *Mapping) readOur(o *our) {
 		return
 	}
 	o.sheet, o.col = sheet, col
-	if o.blank {
+	if o.blank || o.asks() {
 		return
 	}
 	c := sheet.Columns[col]
@@ -107,6 +107,29 @@ func (m *Mapping) readOur(o *our) {
 	if o.value, e = m.own(l, "Ours", c, ofHeading(c, inside)); e != nil {
 		o.fault = e
 		m.problems.Add(*e)
+	}
+}
+
+// asks tells whether a proposal asks what a word stands for, and nobody answered.
+func (o *our) asks() bool { return text(o.line, "Ours") == "?" }
+
+// questions tells which words of the lists in use nobody has answered; records with such a word are not imported.
+func (m *Mapping) questions() {
+	told := map[*wordList]bool{}
+	for _, l := range m.t.Lines("Words") {
+		list := m.lists[workbook.Key(text(l, "List"))]
+		if list == nil || !list.used || told[list] {
+			continue
+		}
+		told[list] = true
+		for _, w := range list.inOrder {
+			for _, o := range w.ours {
+				if o.asks() {
+					e := m.tell(o.line.At("Ours"), "Ours", "?", unanswered)
+					o.fault = &e
+				}
+			}
+		}
 	}
 }
 
@@ -139,7 +162,7 @@ func (im *importer) meaning(c *mapped, typed string) *said {
 			if o.fault != nil {
 				s.fault, s.at = o.fault, o.line.At("Ours").String()
 			}
-			if o.sheet == nil && !o.blank {
+			if o.sheet == nil && !o.blank && o.fault == nil {
 				im.selfOf(s, c, o)
 			}
 		}

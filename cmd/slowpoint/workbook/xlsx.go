@@ -447,7 +447,7 @@ func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
 	row := Row{}
 	col, filled := 0, 0
 	flush := func() {
-		if len(row.Cells) > 0 && !g.Hidden {
+		if len(row.Cells) > 0 {
 			g.Rows = append(g.Rows, row)
 		}
 		row = Row{N: row.N}
