@@ -14,10 +14,10 @@ import (
 // Change is one difference from an earlier plan.
 type Change struct {
 	Product string // or "process Chill", "limit 57 to 21": what it is a row of
-	What    string // "new", "gone", or the column, behind its step, face or point
+	What    string // "new", "gone", "not imported now", or the column, behind its step, face or point
 	Before  string // as it stood there, with its unit; "" for a blank
 	Now     string
-	Cell    string // of their files or of the mapping: "Recipes.xlsx › Cook-chill!F17"; "" for what is gone
+	Cell    string // of their files or of the mapping: "Recipes.xlsx › Cook-chill!F17"; of what is gone, "was …", the place where it was
 }
 
 // String tells it in a line: "Lasagne: Thickness 45 mm → 50 mm (Recipes.xlsx › Cook-chill!F17)".
@@ -62,6 +62,7 @@ type item struct {
 	first       string         // its first column, by key
 	key         string         // all its names
 	line        *workbook.Line // it was read, or stands in the mapping
+	from        string         // of line: where an earlier import took it, as #From tells
 	made        *Made          // or it was made
 	sign        unit.Decimal   // of line
 	r           *Result        // of made, and of line if that stands in the mapping
@@ -118,6 +119,8 @@ func (it *item) at(c *workbook.Column) string {
 	}
 	if v := it.made.value(c); v != nil {
 		switch {
+		case v.At.Row > 0 && v.At.Col > 0 && v.Const != "": // their word, or what it means, may have changed
+			return it.r.Where(v.At) + ", by " + it.r.Mapping + " › " + v.Const
 		case v.At.Row > 0 && v.At.Col > 0:
 			return it.r.Where(v.At)
 		case v.Const != "":
@@ -187,7 +190,41 @@ func Since(name string, r *Result) ([]Change, error) {
 	if t.Grid("Products") == nil {
 		return nil, fmt.Errorf("%s: this is not a plan: it has no visible sheet Products; give the plan that was written by an earlier import", filepath.Base(name))
 	}
-	return compare(stockOf(t), r.stock()), nil
+	return compare(stockOf(t), r.stock(), r), nil
+}
+
+// origins are the cells of the column #From of a sheet of an earlier plan, by row, without the checksum.
+func origins(g *workbook.Grid) map[int]string {
+	if g == nil {
+		return nil
+	}
+	col, out := 0, map[int]string{}
+	for i := range g.Rows {
+		for _, e := range g.Rows[i].Cells {
+			switch {
+			case col == 0 && e.Text == workbook.FromHeading:
+				col = int(e.Col)
+			case int(e.Col) == col:
+				out[g.Rows[i].N], _, _ = strings.Cut(e.Text, " · ")
+			}
+		}
+	}
+	return out
+}
+
+// refused are the products of the result that are not imported, by key, with the first cell at fault.
+func (r *Result) refused() map[string]string {
+	out := map[string]string{}
+	for _, n := range r.Not {
+		if k := workbook.Key(n.Product); k != "" && out[k] == "" {
+			at := n.At
+			if at.Row == 0 && at.Col == 0 {
+				at = n.Record
+			}
+			out[k] = r.Where(at)
+		}
+	}
+	return out
 }
 
 // stockOf is an earlier plan as it is compared.
@@ -200,17 +237,18 @@ func stockOf(t *workbook.Tables) *stock {
 		}
 	}
 	for _, sheet := range workbook.Sheets {
+		from := origins(t.Grid(sheet.Name))
 		for _, l := range t.Lines(sheet.Name) {
-			s.line(sheet, l, sign, nil)
+			s.line(sheet, l, sign, nil, from[l.Ref().Row])
 		}
 	}
 	return s
 }
 
 // line adds a row that was read; how numbers are written is not a row of the sheet Plan.
-func (s *stock) line(sheet *workbook.Sheet, l *workbook.Line, sign unit.Decimal, r *Result) {
+func (s *stock) line(sheet *workbook.Sheet, l *workbook.Line, sign unit.Decimal, r *Result, from string) {
 	if sheet.Name != "Plan" || !isDecimalSign(l) {
-		s.add(sheet, &item{line: l, sign: sign, r: r})
+		s.add(sheet, &item{line: l, sign: sign, r: r, from: from})
 	}
 }
 
@@ -220,7 +258,7 @@ func (r *Result) stock() *stock {
 	for _, sheet := range workbook.Sheets {
 		for _, l := range r.Copied[sheet.Name] {
 			if sound(sheet, l) {
-				s.line(sheet, l, unit.Unsure, r)
+				s.line(sheet, l, unit.Unsure, r, "")
 			}
 		}
 	}
@@ -251,7 +289,7 @@ func same(c *workbook.Column, a, b held) bool {
 	switch {
 	case a.ok && b.ok:
 		return a.si == b.si
-	case c.Choices != nil:
+	case c.Choices != nil || c.Heading == "Process": // names are compared so everywhere
 		return workbook.Key(a.shown) == workbook.Key(b.shown)
 	}
 	return a.shown == b.shown
@@ -261,8 +299,9 @@ func same(c *workbook.Column, a, b held) bool {
 var parts = map[string]string{"Steps": "step ", "Faces": "face ", "Points": "point ", "Layers": "layer "}
 
 // compare lists what changed, in the order of the sheets; what is gone comes last in each.
-func compare(old, now *stock) []Change {
+func compare(old, now *stock, r *Result) []Change {
 	var out []Change
+	refused := r.refused()
 	fresh, lost := map[string]bool{}, map[string]bool{} // products, by key
 	for _, s := range workbook.Sheets {
 		before, after := owners(old.inOrder[s]), owners(now.inOrder[s])
@@ -287,6 +326,10 @@ func compare(old, now *stock) []Change {
 			}
 			if s.Name == "Products" {
 				lost[it.first] = true
+				if at := refused[it.first]; at != "" {
+					out = append(out, Change{Product: it.owner, What: "not imported now", Cell: at})
+					continue
+				}
 			}
 			out = append(out, only(s, it, "gone", after, told, lost)...)
 		}
@@ -323,6 +366,8 @@ func only(s *workbook.Sheet, it *item, word string, other, told, products map[st
 	}
 	if it.r != nil {
 		c.Cell = it.at(nil)
+	} else if it.from != "" {
+		c.Cell = "was " + it.from
 	}
 	return []Change{c}
 }
@@ -330,6 +375,9 @@ func only(s *workbook.Sheet, it *item, word string, other, told, products map[st
 // changes lists the values that differ between two rows of the same names.
 func changes(s *workbook.Sheet, old, now *item) []Change {
 	var out []Change
+	if name := s.Columns[0]; s.Name == "Products" && old.words(name) != now.words(name) {
+		out = append(out, Change{Product: now.owner, What: "the name is written otherwise", Before: old.words(name), Now: now.words(name), Cell: now.at(name)})
+	}
 	for _, c := range s.Columns {
 		a, was := old.value(c)
 		b, is := now.value(c)

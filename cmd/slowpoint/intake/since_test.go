@@ -25,7 +25,21 @@ func TestSince(t *testing.T) {
 		{"a constant", func(r *Result) { r.Made[3].Values[6].Text = "9" },
 			[]string{"process Mash: chill: Film coefficient 12.5 W/m²·K → 9 W/m²·K (map.xlsx › Constants!E8)"}},
 		{"a cell that is now blank", func(r *Result) { r.Made[1].Values[3].Text = "" }, []string{"process Lasagne: chill: Duration 90 min → blank (Recipes.xlsx › Cook-chill row 17)"}},
-		{"a product gone, with its process", func(r *Result) { r.Made = r.Made[:2] }, []string{"Mash: gone"}},
+		{"a product gone, with its process", func(r *Result) { r.Made = r.Made[:2] }, []string{"Mash: gone (was Recipes.xlsx › Cook-chill row 18)"}},
+		{"a product that is not imported now", func(r *Result) {
+			r.Made = r.Made[:2]
+			r.Not = append(r.Not, NotImported{Record: Place{Sheet: "Cook-chill", Row: 18}, At: Place{Sheet: "Cook-chill", Row: 18, Col: 6}, Product: "mash"})
+		}, []string{"Mash: not imported now (Recipes.xlsx › Cook-chill!F18)"}},
+		{"a name written otherwise, with its process", func(r *Result) {
+			for _, i := range []int{2, 3} {
+				r.Made[i].Values = append([]Value(nil), r.Made[i].Values...)
+				r.Made[i].Values[0].Text = "MASH"
+			}
+			r.Made[2].Values[1].Text = "MASH"
+		}, []string{"MASH: the name is written otherwise Mash → MASH (Recipes.xlsx › Cook-chill!A18)"}},
+		{"another meaning of a word", func(r *Result) {
+			r.Made[0].Values[4].Text, r.Made[0].Values[4].Const, r.Made[0].Values[4].At = "Rice, white, cooked", "Words!E3", Place{Sheet: "Cook-chill", Row: 17, Col: 2}
+		}, []string{"Lasagne: Food Potato, mashed, with whole milk → Rice, white, cooked (Recipes.xlsx › Cook-chill!B17, by map.xlsx › Words!E3)"}},
 		{"a product new, with its process", func(r *Result) {
 			r.Made = append(r.Made, r.Made[2:4]...)
 			for _, i := range []int{4, 5} {
