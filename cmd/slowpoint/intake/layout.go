@@ -144,6 +144,7 @@ func isUnit(s string) bool {
 // unitIn finds the unit in a heading: in brackets, as its last words, or the whole of it. A single letter without brackets is none,
 // unless it is all there is.
 func unitIn(heading string) (name, u string, inBrackets bool) {
+	heading = colonless(heading)
 	if name, u = workbook.SplitHeading(heading); u != "" {
 		if isUnit(u) {
 			return name, u, true
@@ -343,7 +344,11 @@ func (l *layout) labels(g *workbook.Grid) []*theirHeading {
 			}
 		}
 	}
-	return onePerLabel(out)
+	out = onePerLabel(out)
+	if l.kind == sheetLayout && namesProduct(out[1:]) { // the card says it itself
+		out[0].name = ""
+	}
+	return out
 }
 
 // labelled is a value beside a label; one of several in the row has its name above it.
@@ -386,7 +391,7 @@ func startsOf(g *workbook.Grid, word string) []spotAt {
 	var out []spotAt
 	for i := range g.Rows {
 		for _, e := range g.Rows[i].Cells {
-			if e.Kind == workbook.Text && workbook.Key(e.Text) == workbook.Key(word) {
+			if e.Kind == workbook.Text && headingKey(e.Text) == headingKey(word) {
 				out = append(out, spotAt{g.Rows[i].N, int(e.Col)})
 			}
 		}

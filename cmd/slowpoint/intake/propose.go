@@ -5,6 +5,7 @@ import (
 	"io"
 	"path/filepath"
 	"regexp"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -177,12 +178,20 @@ func (h *theirHeading) own(all []*theirHeading) (aim, bool) {
 	for _, sheet := range []string{"Products", "Steps", "Foods", "Courses"} {
 		s := workbook.SheetNamed(sheet)
 		c := s.Known(h.name)
-		if c == nil || !h.fits(c) || sheet == "Steps" && c.Heading == "Duration" && !h.isList(all) || sheet != "Products" && c.Heading == "Temperature" && !h.isList(all) {
+		if c == nil || !h.fits(c) || sheet == "Courses" && namesProduct(all) || sheet == "Steps" && c.Heading == "Duration" && !h.isList(all) || sheet != "Products" && c.Heading == "Temperature" && !h.isList(all) {
 			continue
 		}
 		return aim{s, c, h.stage(s, all), "the heading is the plan's own"}, true
 	}
 	return aim{}, false
+}
+
+// namesProduct tells whether a heading of the sheet names its products, which courses have none of.
+func namesProduct(all []*theirHeading) bool {
+	return slices.ContainsFunc(all, func(o *theirHeading) bool {
+		a, ok := tradeAims()[workbook.Key(o.name)]
+		return ok && a.column.Heading == "Product"
+	})
 }
 
 // trade finds a word of the trade.
@@ -216,7 +225,7 @@ func (h *theirHeading) ofStage(all []*theirHeading) (aim, bool) {
 		}
 	}
 	if stage == "" {
-		return aim{}, false
+		return h.ofSomeStep(all)
 	}
 	switch {
 	case column != "":
@@ -233,6 +242,21 @@ func (h *theirHeading) ofStage(all []*theirHeading) (aim, bool) {
 		return aim{}, false
 	}
 	return aim{s, c, stage, "named after a step, and of a " + c.Quantity.Name}, true
+}
+
+// ofSomeStep finds a time or a temperature of a step that nothing names, beside products.
+func (h *theirHeading) ofSomeStep(all []*theirHeading) (aim, bool) {
+	if h.group != "" || h.unit == "" || !namesProduct(all) {
+		return aim{}, false
+	}
+	steps := workbook.SheetNamed("Steps")
+	for _, b := range besides {
+		c := steps.Column(b.column)
+		if slices.ContainsFunc(strings.Split(b.words, ";"), func(w string) bool { return workbook.Key(w) == workbook.Key(h.name) }) && h.fits(c) {
+			return aim{sheet: steps, column: c, why: "a word for the " + c.Quantity.Name + " of a step"}, true
+		}
+	}
+	return aim{}, false
 }
 
 // stage is the part that a heading of Steps belongs to: the step that its group names; none in a list of steps.

@@ -150,6 +150,26 @@ func TestProposeLayout(t *testing.T) {
 	}
 }
 
+// TestProposeCards has cards whose labels end in a colon, beside a name of the product and a time that no step is named for.
+func TestProposeCards(t *testing.T) {
+	card := func(name, product string) *workbook.Grid {
+		return gridOf(name, "Product: | "+product+"\nBase: | mash\nDepth (cm): | 4\nTime (h): | 6")
+	}
+	var out bytes.Buffer
+	p := &proposal{rows: map[string][]map[string]string{}, taken: map[string]bool{}}
+	if err := p.file(fileOf("Cards.xlsx", card("P1", "Mash"), card("P2", "Champ"))); err != nil {
+		t.Fatal(err)
+	}
+	for _, row := range p.rows["Columns"] {
+		out.WriteString(strings.Join([]string{row["Theirs"], row["Sheet"], row["Column"], row["Unit"], row["Question"]}, " | ") + "\n")
+	}
+	want := "{sheet} |  |  |  | \nProduct: | Products | Product |  | \nBase: | Products | Food |  | \nDepth (cm): | Products | Thickness |  | \n" +
+		"Time (h): | Steps | Duration |  | Of which step? Name it in Part.\n"
+	if out.String() != want {
+		t.Errorf("proposed\n%swant\n%s", out.String(), want)
+	}
+}
+
 // TestProposeAsks holds that numbers without a unit stay a question, whatever their size.
 func TestProposeAsks(t *testing.T) {
 	dir := t.TempDir()
