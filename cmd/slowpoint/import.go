@@ -242,7 +242,7 @@ func (o *importOptions) plan(cmd *cobra.Command, m *intake.Mapping, theirs []*wo
 	bar.Add(1)
 	bar.Describe("writing")
 	faulty := r.Faulty()
-	empty := len(r.Made)+len(r.Copied["Products"]) == 0 && (len(r.Not) == 0 || !mapped(r)) // a mapping at fault: a list of every row says nothing
+	empty := len(r.Made) == 0
 	if !empty {
 		files.expect(target)
 		if err := files.writeWhole(target, func(w io.Writer) error { return intake.Write(w, r) }); err != nil {
@@ -258,7 +258,7 @@ func (o *importOptions) plan(cmd *cobra.Command, m *intake.Mapping, theirs []*wo
 		code = exitInput
 	}
 	if empty {
-		return &failure{exitInput, fmt.Errorf("nothing was imported, so %s is not written: mend the mapping %s first", target, r.Mapping)}
+		return &failure{exitInput, fmt.Errorf("nothing was imported, so %s is not written: %s", target, whyNothing(r))}
 	}
 	if o.since != "" {
 		tellChanges(out, filepath.Base(filepath.Clean(o.since)), r.Changes)
@@ -325,6 +325,23 @@ func everything(r *intake.Result, faulty []intake.NotImported) cell.Errors {
 		}
 	}
 	return out
+}
+
+// whyNothing says why nothing was imported.
+func whyNothing(r *intake.Result) string {
+	n := intake.Count{}
+	for _, c := range r.Counts {
+		n.Read, n.LeftOut = n.Read+c.Read, n.LeftOut+c.LeftOut
+	}
+	switch {
+	case !mapped(r):
+		return "mend the mapping " + r.Mapping + " first"
+	case n.Read == 0:
+		return "the list has no rows"
+	case n.LeftOut == n.Read:
+		return "every row is left out by a rule of the mapping " + r.Mapping
+	}
+	return "mend the rows first, as told above"
 }
 
 // mapped tells whether the mapping itself is free of faults.
