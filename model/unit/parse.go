@@ -45,7 +45,20 @@ var (
 		'⅙': {1, 6}, '⅚': {5, 6}, '⅐': {1, 7}, '⅛': {1, 8}, '⅜': {3, 8}, '⅝': {5, 8}, '⅞': {7, 8}, '⅑': {1, 9}, '⅒': {1, 10}}
 )
 
-func tidy(text string) string { return strings.Join(strings.Fields(blanks.Replace(text)), " ") }
+func tidy(text string) string { return strings.Join(strings.Fields(blanks.Replace(Narrow(text))), " ") }
+
+// Narrow writes the full-width forms of East Asian keyboards, as in ５．５（ｍｍ）, as plain letters, digits and signs.
+func Narrow(s string) string {
+	return strings.Map(func(c rune) rune {
+		switch {
+		case c >= '\uff01' && c <= '\uff5e': // in the order of ASCII
+			return c - '\uff01' + '!'
+		case c == '\u3000':
+			return ' '
+		}
+		return c
+	}, s)
+}
 
 // Parse reads a text as a value: a number, a fraction where it can be no range (see slashed.of), a number with its own unit (which wins over the heading's), for durations also
 // several of them (1 h 30 min) and clock forms where the heading says which. heading may be nil: then the text must bring its unit.

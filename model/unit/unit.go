@@ -68,10 +68,11 @@ func (q *Quantity) Listing() string {
 }
 
 var spelling = strings.NewReplacer(" ", "", "\u00a0", "", "\u2009", "", "\u202f", "", "(", "", ")", "", "·", "", "⋅", "", "•", "", "*", "", "×", "",
-	"²", "2", "³", "3", "^", "", "−", "-", "\u207b", "-", "¹", "1", "º", "°", "˚", "°", "℃", "°C", "℉", "°F", "″", "\"", "”", "\"", "“", "\"", "’’", "\"")
+	"²", "2", "³", "3", "^", "", "−", "-", "\u207b", "-", "¹", "1", "º", "°", "˚", "°", "℃", "°C", "℉", "°F", "″", "\"", "”", "\"", "“", "\"", "’’", "\"",
+	"㎜", "mm", "㎝", "cm", "㎡", "m2", "㎥", "m3", "㎏", "kg")
 
 // plainSpelling is a unit's name without anything that makes no difference.
-func plainSpelling(s string) string { return strings.TrimSuffix(spelling.Replace(s), ".") }
+func plainSpelling(s string) string { return strings.TrimSuffix(spelling.Replace(Narrow(s)), ".") }
 
 // Temperature and Difference are two quantities: a difference scales, it never shifts.
 var (

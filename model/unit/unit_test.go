@@ -52,6 +52,13 @@ func TestParse(t *testing.T) {
 		{"overflow", &Length, "1e400", mm, Unsure, 0, "not a number"},
 		{"comparison", &Temperature, "≥75", degC, Unsure, 0, "comparison"},
 		{"two numbers", &Length, "20 30", mm, Unsure, 0, "single number"},
+		{"full-width digit", &Length, "５", mm, Unsure, 0.005, ""},
+		{"full-width number and unit", &Length, "１．５　ｃｍ", mm, Unsure, 0.015, ""},
+		{"full-width sign before °C as one letter", &Temperature, "－１８ ℃", nil, Unsure, -18, ""},
+		{"°F as one letter", &Temperature, "165℉", degC, Unsure, (165 - 32) / 1.8, ""},
+		{"full-width slash", &Temperature, "２／４", degC, Unsure, 0, "range or a fraction"},
+		{"full-width sign before three digits", &Length, "１，２３４", mm, Unsure, 0, "1234 or as 1.234"},
+		{"raised digit is no digit", &Length, "10²", mm, Unsure, 0, "unit of length"},
 		{"range", &Length, "20-30", mm, Unsure, 0, "single number"},
 		{"a range by a slash, °C", &Temperature, "2/4", degC, Unsure, 0, "range or a fraction"},
 		{"a range by a slash, own unit", &Temperature, "2/4 °F", degC, Unsure, 0, "range or a fraction"},
@@ -101,6 +108,10 @@ func TestSpellings(t *testing.T) {
 		prints string
 	}{
 		{&Film, []string{"W/m2K", "W/(m2 K)", "W/m²·K", "W/(m²·K)", "W/m^2 K", "W m⁻² K⁻¹"}, "W/m²·K"},
+		{&Length, []string{"mm", "ｍｍ", "㎜"}, "mm"},
+		{&Area, []string{"㎡", "ｍ２"}, "m²"},
+		{&Temperature, []string{"℉", "°Ｆ"}, "°F"},
+		{&Percent, []string{"％"}, "%"},
 		{&Temperature, []string{"degC", "°C", "℃", "º C", "c"}, "°C"},
 		{&Resistance, []string{"m²K/W", "m2 K/W", "m²·K/W"}, "m²K/W"},
 		{&Conductivity, []string{"W/mK", "W/(m·K)", "W/m·K"}, "W/m·K"},
@@ -141,7 +152,7 @@ func TestEvidence(t *testing.T) {
 }
 
 func FuzzCell(f *testing.F) {
-	for _, s := range []string{"1 1/4 in", "1¼", "2:05", "1 h 30 min", "1,234", "165 °F", "NaN", "1e999", "", "½½", "-", "1/0", "2/4", "5/7 cm", "5⁄6 h", "1-3/4 in", "2 1/2 °C", "/", "1/2/3", "1.2.3,4"} {
+	for _, s := range []string{"1 1/4 in", "1¼", "2:05", "1 h 30 min", "1,234", "165 °F", "NaN", "1e999", "", "½½", "-", "1/0", "５", "－１．５　℃", "２／４", "2/4", "5/7 cm", "5⁄6 h", "1-3/4 in", "2 1/2 °C", "/", "1/2/3", "1.2.3,4"} {
 		f.Add(s, 0)
 	}
 	qs := []Quantity{Temperature, Difference, Length, Duration, Film, Percent, Number}

@@ -637,3 +637,22 @@ func FuzzCSV(f *testing.F) {
 		}
 	})
 }
+
+// TestSplitHeading parts headings as people write them.
+func TestSplitHeading(t *testing.T) {
+	for _, c := range []struct{ typed, name, inside string }{
+		{"Thickness (mm)", "Thickness", "mm"},
+		{"Thickness（mm）", "Thickness", "mm"},
+		{"冷却温度（℃）", "冷却温度", "℃"},
+		{"Thickness ［ｍｍ］", "Thickness", "mm"},
+		{"Thickness（mm)", "Thickness", "mm"},
+		{"Water％", "Water", "%"},
+		{"Water %", "Water", "%"},
+		{"（mm）", "（mm）", ""},
+		{"Note（own） later", "Note（own） later", ""},
+	} {
+		if name, inside := SplitHeading(c.typed); name != c.name || inside != c.inside {
+			t.Errorf("%q: %q and %q, want %q and %q", c.typed, name, inside, c.name, c.inside)
+		}
+	}
+}

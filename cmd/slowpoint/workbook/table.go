@@ -42,20 +42,24 @@ type Line struct {
 	merged   []Block // merged cells that the row has a part of
 }
 
-// SplitHeading divides a heading into its name and what stands in brackets (or a % behind the name).
+// SplitHeading divides a heading into its name and what stands in brackets (or a % behind the name). Brackets, % and the unit may have
+// the full-width forms of East Asian keyboards: （℃）.
 func SplitHeading(s string) (name, inBrackets string) {
-	s = tidy(s)
+	typed := tidy(s)
+	s = narrowed.Replace(typed)
 	for _, pair := range []string{"()", "[]"} {
 		i := strings.IndexByte(s, pair[0])
 		if i > 0 && strings.HasSuffix(s, pair[1:]) {
-			return strings.TrimSpace(s[:i]), strings.TrimSpace(s[i+1 : len(s)-1])
+			return strings.TrimSpace(s[:i]), strings.TrimSpace(unit.Narrow(s[i+1 : len(s)-1]))
 		}
 	}
 	if n := strings.TrimSuffix(s, "%"); n != s && n != "" {
 		return strings.TrimSpace(n), "%"
 	}
-	return s, ""
+	return typed, ""
 }
+
+var narrowed = strings.NewReplacer("（", "(", "）", ")", "［", "[", "］", "]", "％", "%")
 
 // headings finds the columns of a sheet that a row names; the first of two equal ones.
 func headings(s *Sheet, row *Row) map[string]*head {
