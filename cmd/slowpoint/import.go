@@ -301,6 +301,9 @@ func everything(r *intake.Result, faulty []intake.NotImported) cell.Errors {
 	}
 	runs := map[same]*run{} // by file, sheet and words
 	for _, n := range append(slices.Clone(r.Not), faulty...) {
+		if n.Told {
+			continue
+		}
 		at := r.Ref(n.At)
 		if n.At.Row == 0 && n.At.Col == 0 {
 			at = r.Ref(n.Record)
@@ -341,7 +344,7 @@ func whyNothing(r *intake.Result) string {
 	case n.LeftOut == n.Read:
 		return "every row is left out by a rule of the mapping " + r.Mapping
 	}
-	return "mend the rows first, as told above"
+	return "mend what is told above first"
 }
 
 // mapped tells whether the mapping itself is free of faults.

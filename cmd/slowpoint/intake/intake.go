@@ -50,6 +50,7 @@ type NotImported struct {
 	Typed   string
 	Why     string
 	Mend    string
+	Told    bool // Why is a fault of the mapping or of the whole sheet, which Problems tell
 }
 
 // Count is what became of the records of one source: Read = Imported + LeftOut + Not.

@@ -254,7 +254,8 @@ func (im *importer) record(o *opened, rec record, n *Count) {
 		}
 		im.refuseAll(o, rec, f, more)
 		clear(im.filled)
-		im.r.Not[len(im.r.Not)-1].Product = o.product(im)
+		last := &im.r.Not[len(im.r.Not)-1]
+		last.Product, last.Told = o.product(im), true
 		n.Not++
 		return
 	}
