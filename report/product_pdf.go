@@ -627,7 +627,7 @@ func (x *sheet) cardRows(f *rules.Finding) [][2]string {
 		{say("card ccp"), l.CCP},
 		{say("card hazard"), l.Hazard},
 		{say("card note"), l.Note},
-		{say("card cells"), refs(f.Cells)},
+		{say("card cells"), x.refs(f.Cells)},
 	}
 }
 
@@ -732,10 +732,11 @@ func joined(parts ...string) string {
 	return strings.Join(s, "; ")
 }
 
-func refs(rs []cell.Ref) string {
+// refs names cells, and where they come from as far as it is known.
+func (x *sheet) refs(rs []cell.Ref) string {
 	var s []string
 	for _, r := range rs {
-		if t := r.String(); t != "" {
+		if t := (cell.Reading{At: r, From: x.p.From[r]}).Where(); t != "" {
 			s = append(s, t)
 		}
 	}

@@ -66,5 +66,6 @@ type Product struct {
 	Low                                         *model.History // second run at 0.9 k; nil if none was due
 	Samples                                     model.Samples  // every EveryS and at each change of step
 	Judgement                                   rules.Judgement
-	Lever                                       string // the biggest lever in one sentence, for the page of the operator; "" if none was looked for
+	From                                        map[cell.Ref]string // where the cells of the findings come from, as that of Readings; nil if nothing is known
+	Lever                                       string              // the biggest lever in one sentence, for the page of the operator; "" if none was looked for
 }

@@ -3,6 +3,7 @@ package main
 import (
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
+	"slowpoint/model/cell"
 	"slowpoint/report"
 	"slowpoint/rules"
 )
@@ -35,6 +36,16 @@ func (r *runner) calculate(p *workbook.Product) (*report.Product, error) {
 		return nil, err
 	}
 	out.Readings = p.Readings()
+	for _, f := range out.Judgement.Findings {
+		for _, at := range f.Cells {
+			if from := r.plan.Locate(cell.Error{At: at}).From; from != "" {
+				if out.From == nil {
+					out.From = map[cell.Ref]string{}
+				}
+				out.From[at] = from
+			}
+		}
+	}
 	out.Samples = out.History.Sample(r.head.EveryS)
 	out.Lever = r.lever(p, out)
 	return out, nil
