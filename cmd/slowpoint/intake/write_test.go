@@ -404,3 +404,38 @@ func TestEditedRow(t *testing.T) {
 		t.Error(d)
 	}
 }
+
+// TestRowTakenOut: what is counted when the plan is written is missed when a row is deleted in it; the plan as it is written misses none.
+func TestRowTakenOut(t *testing.T) {
+	name := written(t, lasagne())
+	told := func() (out []string) {
+		p, err := workbook.Read(name)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, e := range p.Problems {
+			if strings.Contains(e.Msg, "the import made") || strings.Contains(e.Msg, "after the import") {
+				out = append(out, e.Level.String()+" "+e.At.String()+": "+e.Msg)
+			}
+		}
+		return out
+	}
+	if got := told(); len(got) > 0 {
+		t.Errorf("as it was written: %q", got)
+	}
+	f, err := excelize.OpenFile(name)
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	if err := f.RemoveRow("Steps", workbook.FirstRow+1); err != nil {
+		t.Fatal(err)
+	}
+	if err := f.Save(); err != nil {
+		t.Fatal(err)
+	}
+	want := []string{"warning Steps: 1 row of Steps that the import made is gone: 1 of Recipes.xlsx › Cook-chill part chill"}
+	if d := cmp.Diff(want, told()); d != "" {
+		t.Error(d)
+	}
+}
