@@ -62,6 +62,7 @@ type tensor struct {
 
 type tensorStep struct {
 	ax     [3]*axisStep
+	lo, up film         // of the first axis
 	extra  float64      // rate of a stirred food
 	groups []response   // by medium
 	e0     [3][]float64 // the constant 1 in modes, by axis
@@ -136,7 +137,7 @@ func newTensor(axes [3]*axis, nd *nodes, startC float64, mem, tmp *slab) *tensor
 
 // run appends one step to the field.
 func (f *tensor) run(cs *chainStep) {
-	st := &tensorStep{extra: cs.lumpW}
+	st := &tensorStep{lo: cs.lo[0], up: cs.up[0], extra: cs.lumpW}
 	ax := f.axes
 	for a := range ax {
 		st.ax[a] = ax[a].step(f.mem, f.tmp, cs.props, cs.lo[a], cs.up[a])

@@ -1,6 +1,9 @@
 package model
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // anew is how many samples in a row may be carried from one to the next before the exponentials are taken anew:
 // rounding grows by about one unit of the last place a sample.
@@ -17,7 +20,8 @@ type lineSampler struct {
 	keep      int       // modes worth looking at
 	step      float64   // s, that factor belongs to
 	carried   int       // steps of time since the exponentials were taken
-	rest      []float64 // what the media hold, at the nodes
+	rest      []float64 // what the media hold, at the nodes, if rested
+	rested    bool
 	restMean  float64
 	tau       float64   // s since the start of the segment
 	line      []float64 // the whole field as polynomials, if lined
@@ -25,6 +29,16 @@ type lineSampler struct {
 	lined     bool
 	restLined bool
 	cold, hot float64 // where the coldest and hottest place were found last between nodes
+	known     profile
+}
+
+// profile is what is known of the gradient along the axis. It obeys the heat equation too, so along the axis it cannot change its sign more
+// often than it did, unless it turns round at a face (Sturm 1836, J. Math. Pures Appl. 1:373-444, from memory). While the gradient keeps
+// its sign at both faces, a field that only rises or only falls goes on to do so, and one with one extreme inside keeps one.
+type profile struct {
+	st           *tensorStep // nil: nothing is known
+	lower, upper int         // signs of the gradient at the two ends of the axis
+	turns        int         // extremes inside: 0 or 1
 }
 
 // sampleLine fills samples of a field with one axis, as Sample does for any, with less work.
@@ -39,15 +53,18 @@ func (f *tensor) sampleLine(h *History, s *Samples) {
 		}
 		mean := w.moveTo(t, t-last)
 		last = t
-		low, high := w.ends()
+		low, high, ok := w.follow()
+		if !ok {
+			low, high = w.look()
+		}
 		hull := h.hull[span]
-		s.Points[0][k], s.Mean[k] = clamp(w.b.buf[w.b.order[0]], hull), clamp(mean, hull)
+		s.Points[0][k], s.Mean[k] = clamp(w.node(w.b.order[0]), hull), clamp(mean, hull)
 		s.Coldest[k], s.ColdestAt[k].UpM = clamp(low.c, hull), low.x[0]*w.b.radii[0]
 		s.Hottest[k], s.HottestAt[k].UpM = clamp(high.c, hull), high.x[0]*w.b.radii[0]
 	}
 }
 
-// moveTo fills the nodes with the field d seconds after the last instant, at t, and gives the mean.
+// moveTo brings the modes to the instant t, d seconds after the last, and gives the mean.
 func (w *lineSampler) moveTo(t, d float64) (mean float64) {
 	fresh := w.sg == nil || t > w.sg.t1
 	if fresh {
@@ -78,18 +95,112 @@ func (w *lineSampler) moveTo(t, d float64) (mean float64) {
 		}
 	}
 	if fresh || sg.moves() {
-		sg.mix(tau, w.rest, st.held)
-		w.restMean, w.restLined = sg.restMean(tau), false
+		w.rested, w.restMean, w.restLined = false, sg.restMean(tau), false
 	}
 	w.lined = false
 	amp := w.amp[:w.keep]
-	copy(w.b.buf, w.rest)
-	addRows(w.b.buf, st.gridB[0], w.f.axes[0].n, amp)
 	mean = w.restMean
 	for i, v := range st.e0[0][:len(amp)] {
 		mean += v * amp[i]
 	}
 	return mean
+}
+
+// node is the temperature at a node.
+func (w *lineSampler) node(g int) float64 {
+	sg, n := w.sg, w.f.axes[0].n
+	sum := 0.0
+	for m := range sg.step.held {
+		r := &sg.step.held[m]
+		sum += r.s[g]*(sg.level[m]+sg.slope[m]*w.tau) - r.w[g]*sg.slope[m]
+	}
+	amp := w.amp[:w.keep]
+	for i, v := range sg.step.gridB[0][g*n:][:len(amp)] {
+		sum += v * amp[i]
+	}
+	return sum
+}
+
+// gradients gives the signs of the gradient at the two ends of the axis, from where the media lie; ok is false where that is not clear.
+func (w *lineSampler) gradients() (lower, upper int, ok bool) {
+	sg, last := w.sg, len(w.b.buf)-1
+	into := func(f film, g int) (int, bool) { // 1: heat flows in
+		if f.group < 0 {
+			return 0, true
+		}
+		d := sg.level[f.group] + sg.slope[f.group]*w.tau - w.node(g)
+		switch {
+		case math.IsInf(f.u, 1) || math.Abs(d) < clearK:
+			return 0, false
+		case d > 0:
+			return 1, true
+		}
+		return -1, true
+	}
+	upper, ok = into(sg.step.up, last)
+	if ok && w.f.axes[0].kind == planeFull {
+		lower, ok = into(sg.step.lo, 0)
+	}
+	return -lower, upper, ok
+}
+
+// clearK is how far a surface must be from its medium for the sign of its gradient to be certain, K.
+const clearK = 1e-5
+
+// follow gives the coldest and hottest place from what is known of the field, without looking at all nodes; ok is false if not enough is.
+func (w *lineSampler) follow() (low, high extreme, ok bool) {
+	k := &w.known
+	if k.st != w.sg.step {
+		return low, high, false
+	}
+	if lower, upper, clear := w.gradients(); !clear || lower != k.lower || upper != k.upper {
+		k.st = nil
+		return low, high, false
+	}
+	xs := w.b.nodes.x[0]
+	last := len(xs) - 1
+	low, high = extreme{w.node(0), coord{xs[0]}}, extreme{w.node(last), coord{xs[last]}}
+	if low.c > high.c {
+		low, high = high, low
+	}
+	if k.turns == 0 {
+		return low, high, high.c-low.c > clearK
+	}
+	w.polynomials()
+	v := valley{lo: xs[0], hi: xs[last], start: w.cold}
+	if k.upper > 0 { // a valley
+		low.c, low.x[0] = v.newton(w.f.axes[0].base, w.line, 1)
+		w.cold = low.x[0]
+		return low, high, true
+	}
+	v.start = w.hot
+	high.c, high.x[0] = v.newton(w.f.axes[0].base, w.line, -1)
+	w.hot = high.x[0]
+	return low, high, true
+}
+
+// look fills the nodes, finds the coldest and hottest place among and between them, and remembers what is known of the field by that.
+func (w *lineSampler) look() (low, high extreme) {
+	st := w.sg.step
+	if !w.rested {
+		w.rested = true
+		w.sg.mix(w.tau, w.rest, st.held)
+	}
+	copy(w.b.buf, w.rest)
+	addRows(w.b.buf, st.gridB[0], w.f.axes[0].n, w.amp[:w.keep])
+	low, high, turns := w.ends()
+	w.known = profile{}
+	lower, upper, clear := w.gradients()
+	inside := func(e extreme) bool { return !slices.Contains(w.b.nodes.x[0], e.x[0]) }
+	rise := math.Copysign(1, w.b.buf[len(w.b.buf)-1]-w.b.buf[0])
+	switch {
+	case !clear || turns > 1:
+	case turns == 0 && rise*float64(lower) >= 0 && rise*float64(upper) >= 0: // else a layer at a face is too thin for the nodes
+		w.known = profile{st, lower, upper, 0}
+	case lower*upper < 0 && (upper > 0 && inside(low) || upper < 0 && inside(high)):
+		w.known = profile{st, lower, upper, 1}
+	}
+	return low, high
 }
 
 // addRows adds to each out the product of a row of m (n wide) with v, of which there may be fewer than n: four rows at a time,
@@ -157,12 +268,12 @@ func (sg *tensorSeg) restMean(tau float64) float64 {
 }
 
 // ends finds the coldest and hottest place from the nodes, looking between them only where they leave it open.
-func (w *lineSampler) ends() (low, high extreme) {
+func (w *lineSampler) ends() (low, high extreme, turns int) {
 	b := w.b
 	lo, hi, turns := b.turning()
 	low, high = w.beside(lo, 1, &w.cold), w.beside(hi, -1, &w.hot)
 	if turns < 2 { // no third extreme: none that could rival
-		return low, high
+		return low, high, turns
 	}
 	reach := rivalShare * (b.buf[hi] - b.buf[lo])
 	if i := b.rival(lo, 1, reach, low.c); i >= 0 {
@@ -177,7 +288,7 @@ func (w *lineSampler) ends() (low, high extreme) {
 			high, w.hot = e, x
 		}
 	}
-	return low, high
+	return low, high, turns
 }
 
 // turning gives the coldest and hottest node of one axis, the nearest to the centre of those that are as cold or hot, and how often the

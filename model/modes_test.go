@@ -369,6 +369,49 @@ func trueError(h *History, axes []bodyAxis, filmW, at float64) float64 {
 	return worst
 }
 
+// The same for slabs whose faces meet different films, against a solution with nearly all functions, from the first look at the error on.
+func TestStatedErrorIsHonestWithUnlikeFaces(t *testing.T) {
+	for _, r := range []float64{0.01, 0.02, 0.03, 0.05, 0.08} {
+		for _, w := range [][2]float64{{25, 8}, {25, 0}, {5, 3}, {100, 10}, {8, 80}, {60, 60.1}} {
+			face := func(w, c float64) Exposure {
+				if w == 0 {
+					return Exposure{Surface: Insulated}
+				}
+				return Exposure{Surface: Film, FilmW: &w, Medium: Course{TimesS: []float64{0}, C: []float64{c}}}
+			}
+			step := func(stage *Stage, c float64) Step {
+				return Step{Stage: stage, DurationS: 3600, Exposure: face(w[0], c), Faces: []FaceExposure{{Face: Underside, Exposure: face(w[1], c)}}}
+			}
+			p := Product{Shape: Slab, StartC: 5, Size: Size{ThicknessM: 2 * r},
+				Food: &Material{Name: "test", Source: "input of the test", Waterless: true, Props: func(float64) Properties { return testFood }}}
+			steps := []Step{step(Cook, 160), step(Cool, 2)}
+			h, err := Solve(p, steps, Options{})
+			if err != nil {
+				t.Fatal(err)
+			}
+			fine := &solver{product: &p, steps: steps, options: Options{ConductivityFactor: 1}, tmp: &scratch{slab{wide: 1}, slab{wide: 1}}}
+			fine.layOut()
+			more := 0
+			for fine.degrees(0, more) < maxDegrees-2 {
+				more++
+			}
+			truth := fine.run(more)
+			off := 0.0
+			for _, start := range []float64{0, 3600} {
+				for _, k := range []float64{1, 1.3, 1.7, 2.3, 3, 6} {
+					for x := -1.0; x <= 1; x += 1.0 / 40 {
+						at := Place{UpM: x * r}
+						off = math.Max(off, math.Abs(h.At(at, start+k*h.settle)-truth.At(at, start+k*h.settle)))
+					}
+				}
+			}
+			if off > h.ErrorK*1.2 || h.ErrorK > 0.005 {
+				t.Errorf("half thickness %g m, films %v W/(m²·K), %s: error %.5f K, stated %.5f K", r, w, h.Method, off, h.ErrorK)
+			}
+		}
+	}
+}
+
 // The same in the step after a cook: the field to begin with is no longer uniform.
 func TestStatedErrorIsHonestInTheNextStep(t *testing.T) {
 	for _, shape := range []*Shape{Slab, Cylinder, Sphere} {
