@@ -28,6 +28,8 @@ type lineSampler struct {
 	restLine  []float64 // what the media hold as polynomials, if restLined
 	lined     bool
 	restLined bool
+	first     float64 // temperature at the first node, °C
+	last      float64 // at the last
 	cold, hot float64 // where the coldest and hottest place were found last between nodes
 	known     profile
 }
@@ -58,7 +60,11 @@ func (f *tensor) sampleLine(h *History, s *Samples) {
 			low, high = w.look()
 		}
 		hull := h.hull[span]
-		s.Points[0][k], s.Mean[k] = clamp(w.node(w.b.order[0]), hull), clamp(mean, hull)
+		centre := w.first
+		if f.axes[0].kind == planeFull {
+			centre = w.node(w.b.order[0])
+		}
+		s.Points[0][k], s.Mean[k] = clamp(centre, hull), clamp(mean, hull)
 		s.Coldest[k], s.ColdestAt[k].UpM = clamp(low.c, hull), low.x[0]*w.b.radii[0]
 		s.Hottest[k], s.HottestAt[k].UpM = clamp(high.c, hull), high.x[0]*w.b.radii[0]
 	}
@@ -103,6 +109,7 @@ func (w *lineSampler) moveTo(t, d float64) (mean float64) {
 	for i, v := range st.e0[0][:len(amp)] {
 		mean += v * amp[i]
 	}
+	w.first, w.last = w.node(0), w.node(len(w.b.buf)-1)
 	return mean
 }
 
@@ -123,12 +130,12 @@ func (w *lineSampler) node(g int) float64 {
 
 // gradients gives the signs of the gradient at the two ends of the axis, from where the media lie; ok is false where that is not clear.
 func (w *lineSampler) gradients() (lower, upper int, ok bool) {
-	sg, last := w.sg, len(w.b.buf)-1
-	into := func(f film, g int) (int, bool) { // 1: heat flows in
+	sg := w.sg
+	into := func(f film, surfaceC float64) (int, bool) { // 1: heat flows in
 		if f.group < 0 {
 			return 0, true
 		}
-		d := sg.level[f.group] + sg.slope[f.group]*w.tau - w.node(g)
+		d := sg.level[f.group] + sg.slope[f.group]*w.tau - surfaceC
 		switch {
 		case math.IsInf(f.u, 1) || math.Abs(d) < clearK:
 			return 0, false
@@ -137,9 +144,9 @@ func (w *lineSampler) gradients() (lower, upper int, ok bool) {
 		}
 		return -1, true
 	}
-	upper, ok = into(sg.step.up, last)
+	upper, ok = into(sg.step.up, w.last)
 	if ok && w.f.axes[0].kind == planeFull {
-		lower, ok = into(sg.step.lo, 0)
+		lower, ok = into(sg.step.lo, w.first)
 	}
 	return -lower, upper, ok
 }
@@ -159,7 +166,7 @@ func (w *lineSampler) follow() (low, high extreme, ok bool) {
 	}
 	xs := w.b.nodes.x[0]
 	last := len(xs) - 1
-	low, high = extreme{w.node(0), coord{xs[0]}}, extreme{w.node(last), coord{xs[last]}}
+	low, high = extreme{w.first, coord{xs[0]}}, extreme{w.last, coord{xs[last]}}
 	if low.c > high.c {
 		low, high = high, low
 	}
