@@ -357,6 +357,12 @@ func (w *lineSampler) polynomials() {
 		w.restLined = true
 		w.sg.mix(w.tau, w.restLine, st.lines)
 	}
+	n := len(w.restLine)
+	w.line = w.line[:n]
 	copy(w.line, w.restLine)
-	addRows(w.line, st.ax[0].b, len(w.line), w.amp[:w.keep])
+	addRows(w.line, st.ax[0].b, n, w.amp[:w.keep])
+	for n > 3 && math.Abs(w.line[n-1]) < 1e-9 { // what has smoothed out needs few polynomials
+		n--
+	}
+	w.line = w.line[:n]
 }

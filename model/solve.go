@@ -340,7 +340,12 @@ func (s *solver) ready(body *body, span *Span, axes [3]*axis, nd *nodes, food [2
 	cold, hot := food[0], food[1] // first guess: the food comes all the way to its media
 	for _, e := range exposures(s.product.Shape, st) {
 		for _, m := range s.raised(st, e, nil).C {
-			cold, hot = min(cold, m), max(hot, m)
+			if m < cold {
+				cold = m
+			}
+			if m > hot {
+				hot = m
+			}
 		}
 	}
 	for try := 0; ; try++ {
@@ -482,8 +487,12 @@ func thinned(m Course, durS float64) Course {
 			out.TimesS, out.C = append(out.TimesS, m.TimesS[from]), append(out.C, m.C[from])
 		}
 		t := m.TimesS[i] - m.TimesS[from]
-		low = max(low, (m.C[i]-thinK-m.C[from])/t)
-		high = min(high, (m.C[i]+thinK-m.C[from])/t)
+		if x := (m.C[i] - thinK - m.C[from]) / t; x > low {
+			low = x
+		}
+		if x := (m.C[i] + thinK - m.C[from]) / t; x < high {
+			high = x
+		}
 		if m.TimesS[i] >= durS {
 			out.TimesS, out.C = append(out.TimesS, m.TimesS[i]), append(out.C, m.C[i])
 			return out
