@@ -137,7 +137,7 @@ func commandTable() string {
 		for _, line := range strings.Split(strings.TrimSpace(c.LocalFlags().FlagUsages()), "\n") {
 			if words := strings.Fields(line); len(words) > 0 {
 				n := 1
-				if words[1] == strings.ToUpper(words[1]) { // the word for its value
+				if w := strings.TrimSuffix(words[1], ".xlsx"); w == strings.ToUpper(w) { // the word for its value
 					n = 2
 				}
 				flags = append(flags, "`"+strings.Join(words[:n], " ")+"` "+strings.Join(words[n:], " "))

@@ -37,9 +37,9 @@ imported are listed in the plan's sheet "Not imported" with the reason; each val
 		RunE:    func(cmd *cobra.Command, args []string) error { return importThem(cmd, args, &o, files) },
 	}
 	f := cmd.Flags()
-	f.StringVar(&o.mapping, "map", "", "`MAP`: the workbook, or folder of CSV files, that says what goes where")
-	f.StringVar(&o.propose, "propose", "", "look at the files and write a mapping to be confirmed: `MAP.xlsx`")
-	f.StringVar(&o.out, "out", "", "`PLAN.xlsx` to be written (default THEIRS-plan.xlsx beside the first file)")
+	f.StringVar(&o.mapping, "map", "", "the mapping, `MAP`: a workbook or a folder of CSV files that says what goes where")
+	f.StringVar(&o.propose, "propose", "", "look at the files and write a mapping to be confirmed, `MAP.xlsx`")
+	f.StringVar(&o.out, "out", "", "write the plan to `PLAN.xlsx` (default THEIRS-plan.xlsx beside the first file)")
 	f.StringVar(&o.name, "name", "", "`NAME` of the plan, instead of that of the first file: NAME-plan.xlsx")
 	f.StringVar(&o.since, "since", "", "an earlier plan, `OLD.xlsx`: tell what is new, gone and changed since")
 	f.BoolVar(&o.thenCheck, "check", false, "go on with slowpoint check on the plan; the flags below are for it")
