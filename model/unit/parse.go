@@ -20,6 +20,12 @@ const (
 // Mistake is a text that is no value of a quantity: Says goes on after the quoted text, Mend tells what to type instead.
 type Mistake struct{ Says, Mend string }
 
+// Words of mistakes by which whoever words them anew for another place knows them.
+const (
+	NoUnit   = "has no unit"                             // how Says begins where neither the heading nor the cell gives a unit
+	SignItem = "the item Decimal sign of the sheet Plan" // where Mend sends for a sign that can be read two ways
+)
+
 // Error joins the two.
 func (m *Mistake) Error() string { return m.Says + " – " + m.Mend }
 
@@ -103,7 +109,7 @@ func (q *Quantity) Parse(text string, heading *Unit, d Decimal) (Value, *Mistake
 		case n > 0:
 			return Value{}, q.noNumber(s)
 		case u == nil:
-			return Value{}, &Mistake{"has no unit, and its heading gives none", "put the unit in brackets after the heading or behind the number: " + q.Listing()}
+			return Value{}, &Mistake{NoUnit + ", and its heading gives none", "put the unit in brackets after the heading or behind the number: " + q.Listing()}
 		case strings.Contains(u.Name(), ":"):
 			return Value{}, &Mistake{"is not in the form " + u.Name() + " that the heading announces", "type it as " + u.Name() + ", or change the unit of the heading"}
 		}
@@ -278,7 +284,7 @@ func pointed(s string, d Decimal) (string, *Mistake) {
 	switch {
 	case ambiguous:
 		a, b := strings.NewReplacer(",", "", ".", "").Replace(s), strings.Replace(s, ",", ".", 1)
-		return "", &Mistake{"can be read as " + a + " or as " + b, "type it without a sign between thousands, or fill the item Decimal sign of the sheet Plan"}
+		return "", &Mistake{"can be read as " + a + " or as " + b, "type it without a sign between thousands, or fill " + SignItem}
 	case kind == bad:
 		return "", &Mistake{}
 	case kind != Unsure && d != Unsure && kind != d:

@@ -542,8 +542,8 @@ func (m *Mapping) own(l *workbook.Line, heading string, c *workbook.Column, u *u
 	t, e := c.Take(l.Entry(heading), workbook.Under{At: at, Grid: g, Unit: u, Decimal: unit.Unsure})
 	if e != nil {
 		e.Field = heading
-		e.Hint = strings.ReplaceAll(e.Hint, ", or fill the item Decimal sign of the sheet Plan", "")
-		if strings.HasPrefix(e.Msg, noUnit) {
+		e.Hint = strings.ReplaceAll(e.Hint, ", or fill "+unit.SignItem, "")
+		if strings.HasPrefix(e.Msg, unit.NoUnit) {
 			e.Msg, e.Hint = fill(ownNoUnit.msg, []string{c.Heading}), fill(ownNoUnit.hint, []string{c.Heading, c.Quantity.Listing()})
 		}
 		return Value{}, e

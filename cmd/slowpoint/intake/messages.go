@@ -16,9 +16,6 @@ func (s saying) problem(at cell.Ref, level cell.Level, field, typed string, args
 	return cell.Error{At: at, Level: level, Field: field, Typed: typed, Msg: fill(s.msg, args), Hint: fill(s.hint, args)}
 }
 
-// noUnit begins what a column says of a number without a unit.
-const noUnit = "has no unit"
-
 // Every wording of the import; those of single values come from workbook.
 var (
 	// the mapping

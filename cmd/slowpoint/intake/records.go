@@ -468,9 +468,9 @@ func (im *importer) take(o *opened, rec record, i int, m *mapped, f *found, at P
 func (im *importer) notTaken(o *opened, rec record, h *headUnit, m *mapped, at Place, e *cell.Error) {
 	c := m.to.column()
 	why := saying{"{1}", "{2}"}
-	mend := strings.ReplaceAll(e.Hint, "the item Decimal sign of the sheet Plan", "Decimal sign in the sheet Sources of the mapping")
+	mend := strings.ReplaceAll(e.Hint, unit.SignItem, "Decimal sign in the sheet Sources of the mapping")
 	switch {
-	case strings.HasPrefix(e.Msg, noUnit):
+	case strings.HasPrefix(e.Msg, unit.NoUnit):
 		mend = fill(headNoUnit.hint, []string{c.Heading, m.line.Ref().String()}) + ", or a unit behind the number"
 		if !h.told {
 			h.told = true
