@@ -91,4 +91,7 @@ type Samples struct {
 // Options of Solve; the zero value is the usual.
 type Options struct {
 	ConductivityFactor float64 // multiplies every conductivity; 0 = 1
+	// ErrorFromS is the time after each change of surroundings from which the error is held and stated, s; 0 = 30 s, or sooner for
+	// small foods. Who needs later times only gets them with fewer polynomials. Of short steps a quarter is the most.
+	ErrorFromS float64
 }

@@ -15,12 +15,14 @@ type lineSampler struct {
 	f         *tensor
 	b         *body
 	sg        *tensorSeg
-	amp       []float64 // what decays, by mode
-	factor    []float64 // by mode, over one step of time
-	keep      int       // modes worth looking at
-	step      float64   // s, that factor belongs to
-	carried   int       // steps of time since the exponentials were taken
-	rest      []float64 // what the media hold, at the nodes, if rested
+	amp       []float64   // what decays, by mode
+	factor    []float64   // by mode, over one step of time
+	keep      int         // modes worth looking at
+	factored  int         // how many of factor are known
+	of        *tensorStep // that factor belongs to
+	step      float64     // s, that factor belongs to
+	carried   int         // steps of time since the exponentials were taken
+	rest      []float64   // what the media hold, at the nodes, if rested
 	rested    bool
 	restMean  float64
 	tau       float64   // s since the start of the segment
@@ -81,13 +83,16 @@ func (w *lineSampler) moveTo(t, d float64) (mean float64) {
 	w.tau = tau
 	if fresh || w.carried == anew {
 		w.f.gridValues(st)
-		w.keep, w.carried, w.step = decays(st.ax[0].rate, tau, w.amp), 0, math.NaN()
+		if w.of != st {
+			w.of, w.factored = st, 0
+		}
+		w.keep, w.carried = decays(st.ax[0].rate, tau, w.amp), 0
 		for i, c := range sg.c[:w.keep] {
 			w.amp[i] *= c
 		}
 	} else {
-		if d != w.step {
-			w.step = d
+		if d != w.step || w.keep > w.factored {
+			w.step, w.factored = d, w.keep
 			for i, r := range st.ax[0].rate[:w.keep] {
 				w.factor[i] = math.Exp(-r * d)
 			}

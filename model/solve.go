@@ -12,7 +12,7 @@ import (
 // Goals of the error estimate by number of axes, K: resolution is raised until the estimate is below.
 var goalK = [4]float64{0, 0.0048, 0.0095, 0.019}
 
-// settleS is the time after a change of surroundings from which the error is estimated, s; less for small foods.
+// settleS is the time after a change of surroundings from which the error is estimated unless told otherwise, s; less for small foods.
 const settleS = 30
 
 // Solve predicts the history of a product through its steps. Conduction with constant properties in each step is solved
@@ -100,9 +100,11 @@ func (s *solver) layOut() {
 	}
 	q := s.props(50)
 	alpha := q.KWmK / (q.RhoKgM3 * q.CJkgK)
-	s.settle = settleS
-	for a := 0; a < s.used; a++ {
-		s.settle = min(s.settle, 0.02*s.radii[a]*s.radii[a]/alpha)
+	if s.settle = s.options.ErrorFromS; s.settle == 0 {
+		s.settle = settleS
+		for a := 0; a < s.used; a++ {
+			s.settle = min(s.settle, 0.02*s.radii[a]*s.radii[a]/alpha)
+		}
 	}
 	for i := range s.steps {
 		s.settle = min(s.settle, s.steps[i].DurationS/4)
