@@ -11,7 +11,7 @@ import (
 // (common practice, no source). Beyond it the water inside boils off, which conduction does not describe.
 const boilsK = 5
 
-// boiling refuses a food that would be hotter than boiling water throughout. It looks at the ends of the steps, since the coldest place
+// boiling warns of a food that would be hotter than boiling water throughout. It looks at the ends of the steps, since the coldest place
 // warms all the time in surroundings that stay as they are, and between them where the surroundings change.
 func (s *solver) boiling(h *History) {
 	if s.product.Food.Waterless {
@@ -36,7 +36,7 @@ func (s *solver) boiling(h *History) {
 			if low, _ := h.body.extremes(s.main.at(t)); e == nil || low.c <= limit {
 				continue
 			}
-			s.refused.Add(s.boilsOver(h, e, sp, t, limit))
+			h.Warnings.Add(s.boilsOver(h, e, sp, t, limit))
 			return
 		}
 	}
@@ -69,7 +69,7 @@ func (m *Course) mostC() float64 {
 	return most
 }
 
-// boilsOver words the refusal: t is an instant in the span at which all of the food is above limit, °C.
+// boilsOver words the warning: t is an instant in the span at which all of the food is above limit, °C.
 func (s *solver) boilsOver(h *History, e *Exposure, sp *Span, t, limit float64) cell.Error {
 	before, after := sp.StartS, t
 	for after-before > 1 {
@@ -87,11 +87,11 @@ func (s *solver) boilsOver(h *History, e *Exposure, sp *Span, t, limit float64) 
 	}
 	altitude := sp.Step.AltitudeM
 	place := s.product.Where(h.body.place(low.x))
-	msg := fmt.Sprintf("would heat %s beyond boiling throughout: even its coldest place (%s) passes %.1f °C %.0f min into the step %s and is at %.1f °C %.0f min into it, but water boils at %.1f °C at %g m above the sea, and food that holds water does not get hotter inside while it boils off; conduction without evaporation does not describe that",
+	msg := fmt.Sprintf("would heat %s beyond boiling throughout: even its coldest place (%s) passes %.1f °C %.0f min into the step %s and is at %.1f °C %.0f min into it, but water boils at %.1f °C at %g m above the sea, and food that holds water does not get hotter inside while it boils off; conduction without evaporation does not describe that, so do not rely on what is calculated from there on",
 		s.product.Name, place, limit, (after-sp.StartS)/60, sp.Step.Name, low.c, (t-sp.StartS)/60, boilingC(altitude), altitude)
 	hint := "look at the temperature and its unit (°F typed in a °C column?), or shorten the step"
 	if e.Surface == Steam {
 		hint += "; steam under pressure is outside this program"
 	}
-	return cell.Error{At: e.At, Field: field, Typed: typed, Msg: msg, Hint: hint}
+	return cell.Error{At: e.At, Level: cell.Warning, Field: field, Typed: typed, Msg: msg, Hint: hint}
 }

@@ -1,5 +1,7 @@
 package model
 
+import "slowpoint/model/cell"
+
 // Span is one step as it ran.
 type Span struct {
 	Step        *Step
@@ -43,6 +45,8 @@ type History struct {
 	Points []Point // "centre" first, then the user's
 	ErrorK float64 // honest estimate of the largest error at any place, from half a minute after each change of surroundings (sooner for small foods)
 	Method string  // in words, for the report
+	// Warnings are what only the calculation shows and what makes its result doubtful: food that is hotter than boiling water throughout.
+	Warnings cell.Errors
 	// Bound says in words why temperatures are bounds from BoundFromS on (a chill medium raised to the freezing point:
 	// the true food is at or below them until it freezes); "" if they are not.
 	Bound      string

@@ -21,7 +21,7 @@ const settleS = 30
 // that of the number of polynomials; it is estimated by solving again with fewer, and the number is raised until it is small.
 //
 // It fails with cell.Errors where Check finds something, and where only the temperatures show what cannot be calculated: air that is
-// warmer than the food, food that is hotter than boiling water throughout. A History is for one goroutine at a time.
+// warmer than the food. A History is for one goroutine at a time.
 func Solve(p Product, steps []Step, o Options) (*History, error) {
 	if found := Check(p, steps); found.Faults() > 0 {
 		return nil, found
@@ -39,9 +39,7 @@ func Solve(p Product, steps []Step, o Options) (*History, error) {
 		}
 		s.estimate(h, more)
 		if h.ErrorK <= goalK[s.used] || s.full(more) {
-			if s.boiling(h); len(s.refused) > 0 {
-				return nil, s.refused
-			}
+			s.boiling(h)
 			return h, nil
 		}
 	}

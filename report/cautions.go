@@ -37,6 +37,9 @@ var triggers = []trigger{
 		return anyExposure(sp.Step, func(e *model.Exposure) bool { return inAir(e) && e.Surface != model.Film && uncovered(e) && !wet(e) }) // a typed coefficient stands for everything
 	})},
 	{"carry-over without evaporation", carryOver},
+	{"boiling throughout", func(h *Head, p *Product) ([]any, bool) {
+		return nil, p.History != nil && len(p.History.Warnings) > 0
+	}},
 	{"moist surface above boiling", boiling},
 	{"chill medium raised to the freezing point", stepsWhere(func(sp *model.Span) bool { return sp.MediumFromC != nil })},
 	{"crossing freezing", freezing},

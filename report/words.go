@@ -121,6 +121,7 @@ var words = map[string]string{
 	"caution water film assumed high":                   "The film coefficient of a water bath is assumed for free water: %s. Effective values measured on bagged joints were a few tens of W/m²·K, not hundreds.",
 	"caution evaporation left out":                      "Evaporation from an open surface is left out: %s. A wet surface heats more slowly and cools faster than calculated.",
 	"caution carry-over without evaporation":            "Carry-over is credited without an evaporating surface in the step %s: a moist surface loses heat while standing, so the true inside rises less.",
+	"caution boiling throughout":                        "The whole food is predicted hotter than boiling water. Food that holds water does not get there: it boils off first. Do not rely on what is calculated from there on; look at the temperatures and their units.",
 	"caution moist surface above boiling":               "The surface is predicted at up to %s. A moist surface stays near %s until it has dried, so the food may heat more slowly than calculated.",
 	"caution chill medium raised to the freezing point": "The chill medium is colder than the food's freezing point and was raised to it: %s. The temperatures from there on are bounds; freezing itself is not calculated.",
 	"caution crossing freezing":                         "The food comes down to %s, at or below its freezing point of %s. Heat of freezing and properties of frozen food matter there.",

@@ -46,6 +46,9 @@ func (r *runner) calculate(p *workbook.Product) (*report.Product, error) {
 			}
 		}
 	}
+	for i, e := range out.History.Warnings {
+		out.History.Warnings[i] = p.AsTyped(r.plan.Locate(e))
+	}
 	out.Samples = out.History.Sample(r.head.EveryS)
 	out.Lever = r.lever(p, out)
 	return out, nil

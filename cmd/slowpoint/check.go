@@ -259,6 +259,7 @@ type runner struct {
 	advice   []string               // by row: the advice that is not met, a line each
 	names    map[string]string      // by product: the file name of its report, without its ending
 	refused  []report.NotCalculated // found while calculating
+	warned   cell.Errors            // as well, of products that were calculated
 }
 
 // ahead is how many products a processor may be ahead of the one that is written.
@@ -294,6 +295,7 @@ func (r *runner) all() error {
 			row.File = d.file
 		}
 		r.rows, r.advice = append(r.rows, row), append(r.advice, adviceNotMet(d.product))
+		r.warned = append(r.warned, d.product.History.Warnings...)
 		return nil
 	}
 	if err := r.each(true, add); err != nil {
@@ -305,6 +307,7 @@ func (r *runner) all() error {
 		r.head.Problems = append(r.head.Problems, n.Because...)
 		r.head.Products--
 	}
+	r.head.Problems = append(r.head.Problems, r.warned...)
 	for _, w := range []func() error{js.Close, book.Close, text.Close} {
 		if err := w(); err != nil {
 			return err

@@ -44,9 +44,9 @@ func TestRefusedWhileCalculated(t *testing.T) {
 	}
 }
 
-// An oven of 350 °F typed in the °C column, for an hour: the centre of a solid slab would be at 128 °C. It is refused at its cell, with a
-// warning that no oven of a kitchen is so hot.
-func TestRefusedBeyondBoiling(t *testing.T) {
+// An oven of 350 °F typed in the °C column, for an hour: the centre of a solid slab would be at 128 °C. It is warned of at its cell, on
+// the terminal, in results.json and in the report, as is that no oven of a kitchen is so hot.
+func TestWarnedBeyondBoiling(t *testing.T) {
 	dir := filepath.Join(t.TempDir(), "plan")
 	writePlan(t, dir, map[string]string{
 		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nTray,A,slab,50,Mash,5\n",
@@ -56,13 +56,18 @@ func TestRefusedBeyondBoiling(t *testing.T) {
 	})
 	var out, errs bytes.Buffer
 	code := run([]string{"check", dir, "--date", "2026-01-31", "--no-pdf"}, nil, &out, &errs)
-	for _, want := range []string{"error: Steps!F2: \"350 °C\"", "beyond boiling", "warning: Steps!F2: \"350 °C\" is read as 350 °C, which is unusual"} {
+	for _, want := range []string{"warning: Steps!F2: \"350 °C\" would heat Tray beyond boiling throughout", "warning: Steps!F2: \"350 °C\" is read as 350 °C, which is unusual"} {
 		if !strings.Contains(errs.String(), want) {
 			t.Errorf("%q is not in\n%s", want, errs.String())
 		}
 	}
-	if code != exitInput || !strings.Contains(out.String(), "NOT CALCULATED Tray") {
+	if code != exitMet {
 		t.Errorf("exit %d\n%s", code, out.String())
+	}
+	for file, want := range map[string]string{"results.json": "beyond boiling throughout", "report.txt": "hotter than boiling water"} {
+		if data, err := os.ReadFile(filepath.Join(dir+"-results", file)); err != nil || !bytes.Contains(data, []byte(want)) {
+			t.Errorf("%s does not say %q: %v", file, want, err)
+		}
 	}
 }
 
