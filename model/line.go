@@ -15,6 +15,7 @@ type lineSampler struct {
 	f         *tensor
 	b         *body
 	sg        *tensorSeg
+	at, from  int         // the places of sg, and of that of the sample before, among the segments
 	amp       []float64   // what decays, by mode
 	factor    []float64   // by mode, over one step of time
 	keep      int         // modes worth looking at
@@ -38,7 +39,9 @@ type lineSampler struct {
 
 // profile is what is known of the gradient along the axis. It obeys the heat equation too, so along the axis it cannot change its sign more
 // often than it did, unless it turns round at a face (Sturm 1836, J. Math. Pures Appl. 1:373-444, from memory). While the gradient keeps
-// its sign at both faces, a field that only rises or only falls goes on to do so, and one with one extreme inside keeps one.
+// its sign at both faces, a field that only rises or only falls goes on to do so, and one with one extreme inside keeps one. The sign is
+// seen at the samples only; between them it stays where a medium that warms the food does not fall and one that cools it does not
+// rise: then all of the food stays on its side of the media (maximum principle), as one that has an extreme inside does of a common medium.
 type profile struct {
 	st           *tensorStep // nil: nothing is known
 	lower, upper int         // signs of the gradient at the two ends of the axis
@@ -75,8 +78,9 @@ func (f *tensor) sampleLine(h *History, s *Samples) {
 // moveTo brings the modes to the instant t, d seconds after the last, and gives the mean.
 func (w *lineSampler) moveTo(t, d float64) (mean float64) {
 	fresh := w.sg == nil || t > w.sg.t1
-	if fresh {
-		w.sg = &w.f.segs[w.f.segAt(t)]
+	if w.from = w.at; fresh {
+		w.at = w.f.segAt(t)
+		w.sg = &w.f.segs[w.at]
 	}
 	sg, st := w.sg, w.sg.step
 	tau := min(max(t-sg.t0, 0), sg.t1-sg.t0)
@@ -159,13 +163,31 @@ func (w *lineSampler) gradients() (lower, upper int, ok bool) {
 // clearK is how far a surface must be from its medium for the sign of its gradient to be certain, K.
 const clearK = 1e-5
 
+// steady tells whether, since the sample before, no medium that warms the food fell and none that cools it rose.
+func (w *lineSampler) steady() bool {
+	st := w.sg.step
+	for i := w.from; i <= w.at; i++ {
+		sg := &w.f.segs[i]
+		if sg.step != st {
+			continue
+		}
+		if g := st.up.group; g >= 0 && sg.slope[g]*float64(w.known.upper) < 0 {
+			return false
+		}
+		if g := st.lo.group; g >= 0 && sg.slope[g]*float64(w.known.lower) > 0 {
+			return false
+		}
+	}
+	return true
+}
+
 // follow gives the coldest and hottest place from what is known of the field, without looking at all nodes; ok is false if not enough is.
 func (w *lineSampler) follow() (low, high extreme, ok bool) {
 	k := &w.known
 	if k.st != w.sg.step {
 		return low, high, false
 	}
-	if lower, upper, clear := w.gradients(); !clear || lower != k.lower || upper != k.upper {
+	if lower, upper, clear := w.gradients(); !clear || lower != k.lower || upper != k.upper || !w.steady() {
 		k.st = nil
 		return low, high, false
 	}
@@ -209,7 +231,7 @@ func (w *lineSampler) look() (low, high extreme) {
 	case !clear || turns > 1:
 	case turns == 0 && rise*float64(lower) >= 0 && rise*float64(upper) >= 0: // else a layer at a face is too thin for the nodes
 		w.known = profile{st, lower, upper, 0}
-	case lower*upper < 0 && (upper > 0 && inside(low) || upper < 0 && inside(high)):
+	case turns == 1 && lower*upper < 0 && st.lo.group == st.up.group && (upper > 0 && inside(low) || upper < 0 && inside(high)):
 		w.known = profile{st, lower, upper, 1}
 	}
 	return low, high

@@ -24,7 +24,7 @@ type box struct {
 // pageBoxes are the words of a PDF page by page, and the size of the page in pt.
 func pageBoxes(t *testing.T, pdf []byte) (pages [][]box, wide, tall float64) {
 	t.Helper()
-	tool := pdftotext(t)
+	tool := outside(t, "pdftotext")
 	cmd := exec.Command(tool, "-bbox", "-", "-")
 	cmd.Stdin = bytes.NewReader(pdf)
 	out, err := cmd.Output()

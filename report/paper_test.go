@@ -131,11 +131,7 @@ func TestLettering(t *testing.T) {
 			t.Errorf("weight %d: %d fonts, want %d", k, p.fonts[k].n, want)
 		}
 	}
-	tool, err := exec.LookPath("pdffonts")
-	if err != nil {
-		t.Skip("pdffonts is missing")
-	}
-	cmd := exec.Command(tool, "-")
+	cmd := exec.Command(outside(t, "pdffonts"), "-")
 	cmd.Stdin = bytes.NewReader(pdf)
 	out, err := cmd.CombinedOutput()
 	if n := len(regexp.MustCompile(`utf8dejavu\S* +CID TrueType +Identity-H +yes no +yes`).FindAll(out, -1)); err != nil || n != 3 {

@@ -110,15 +110,15 @@ func keep(t testing.TB, pdf []byte) {
 	}
 }
 
-// pdftotext finds the tool; without it the test is skipped, and fails in CI.
-func pdftotext(t *testing.T) string {
+// outside finds a tool of another program; without it the test is skipped, and fails in CI.
+func outside(t *testing.T, name string) string {
 	t.Helper()
-	tool, err := exec.LookPath("pdftotext")
+	tool, err := exec.LookPath(name)
 	if err != nil {
 		if os.Getenv("CI") != "" {
-			t.Fatal("pdftotext is missing")
+			t.Fatal(name + " is missing")
 		}
-		t.Skip("pdftotext is missing")
+		t.Skip(name + " is missing")
 	}
 	return tool
 }
@@ -126,7 +126,7 @@ func pdftotext(t *testing.T) string {
 // pdfText gives the text of a PDF, with runs of blanks made one.
 func pdfText(t *testing.T, pdf []byte) string {
 	t.Helper()
-	tool := pdftotext(t)
+	tool := outside(t, "pdftotext")
 	cmd := exec.Command(tool, "-layout", "-", "-")
 	cmd.Stdin = bytes.NewReader(pdf)
 	out, err := cmd.Output()
