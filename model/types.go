@@ -149,6 +149,22 @@ type Material struct {
 	Waterless     bool   // it holds no water, so that nothing in it boils; false: it does, or nobody knows
 	SetForm       string // of a food that flows: the built-in food that it is once it has set; "" if none is listed
 	Composition   string // in words, for the report: "water 71.7 %, protein 21.2 %, …"; "" if typed as properties
+
+	// EnthalpyJkg gives the heat content in J/kg through freezing, rising strictly, from LowC to HighC. It is set where FreezingC is known and
+	// the composition tells how much ice forms; Props then holds below FreezingC too: conductivity with the ice, the density at the
+	// freezing point (the mass stays, swelling is left out), and the apparent specific heat, the slope of EnthalpyJkg. Nil: the food may not be
+	// calculated below its freezing point.
+	EnthalpyJkg func(tC float64) float64
+	// IceShare gives the mass of ice in a kg of food at a temperature; nil as EnthalpyJkg.
+	IceShare func(tC float64) float64
+}
+
+// Layer is one layer of a layered slab.
+type Layer struct {
+	At         cell.Ref
+	Food       *Material
+	ThicknessM float64
+	BelowM2KW  float64 // contact resistance to the layer below it, m²·K/W; 0: they touch perfectly; of the last layer: 0
 }
 
 // Product is one product; its process is the chain of steps that goes with it.
@@ -157,7 +173,8 @@ type Product struct {
 	Name   string
 	Shape  *Shape
 	Size   Size
-	Food   *Material
+	Food   *Material // nil for a layered slab
+	Layers []Layer   // layered slab: from the top; Size.ThicknessM is their sum
 	StartC float64
 	Points []Point // extra places; the centre is always known
 	Inches bool    // its sizes were typed in inches or feet: lengths in words stand in inches, with mm in brackets
