@@ -582,13 +582,20 @@ func (f *tensor) gridValues(st *tensorStep) {
 		f.now.contract(r.s, whole, nil, st, at.s)
 		f.now.contract(r.w, whole, nil, st, at.w)
 		st.held = append(st.held, at)
-		if f.single() {
-			n := f.axes[0].n
-			line := response{f.mem.take(n), f.mem.take(n)}
-			addRows(line.s, st.ax[0].b, n, r.s)
-			addRows(line.w, st.ax[0].b, n, r.w)
-			st.lines = append(st.lines, line)
-		}
+	}
+}
+
+// polynomialResponses gives the responses of a field with one axis as polynomials.
+func (f *tensor) polynomialResponses(st *tensorStep) {
+	if len(st.lines) > 0 {
+		return
+	}
+	n := f.axes[0].n
+	for _, r := range st.groups {
+		line := response{f.mem.take(n), f.mem.take(n)}
+		addRows(line.s, st.ax[0].b, n, r.s)
+		addRows(line.w, st.ax[0].b, n, r.w)
+		st.lines = append(st.lines, line)
 	}
 }
 
@@ -792,7 +799,7 @@ func (s *tensorShot) restAlong(axis int, x coord, v [3][]float64) []float64 {
 
 // only gives the polynomials of a field with one axis.
 func (s *tensorShot) only(out []float64) {
-	s.f.gridValues(s.sg.step)
+	s.f.polynomialResponses(s.sg.step)
 	s.sg.mix(s.tau, out, s.sg.step.lines)
 	addRows(out, s.sg.step.ax[0].b, s.f.axes[0].n, s.amp[:s.keep[0]])
 }

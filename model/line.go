@@ -9,32 +9,49 @@ import (
 // rounding grows by about one unit of the last place a sample.
 const anew = 64
 
+// faint is the amplitude below which a mode is no longer looked at, K.
+const faint = 1e-10
+
 // lineSampler walks through a field with one axis: even steps of time within a segment multiply each mode by the same number,
-// and what the media hold is added up once a segment.
+// and what is asked at every sample is a sum over few modes.
 type lineSampler struct {
-	f         *tensor
-	b         *body
-	sg        *tensorSeg
-	at, from  int         // the places of sg, and of that of the sample before, among the segments
-	amp       []float64   // what decays, by mode
-	factor    []float64   // by mode, over one step of time
-	keep      int         // modes worth looking at
-	factored  int         // how many of factor are known
-	of        *tensorStep // that factor belongs to
-	step      float64     // s, that factor belongs to
-	carried   int         // steps of time since the exponentials were taken
-	rest      []float64   // what the media hold, at the nodes, if rested
-	rested    bool
-	restMean  float64
-	tau       float64   // s since the start of the segment
-	line      []float64 // the whole field as polynomials, if lined
-	restLine  []float64 // what the media hold as polynomials, if restLined
-	lined     bool
-	restLined bool
-	first     float64 // temperature at the first node, °C
-	last      float64 // at the last
-	cold, hot float64 // where the coldest and hottest place were found last between nodes
-	known     profile
+	f                         *tensor
+	b                         *body
+	sg                        *tensorSeg
+	at, from                  int                 // the places of sg, and of that of the sample before, among the segments
+	of                        *tensorStep         // that factor and watch belong to
+	amp                       [maxDegrees]float64 // what decays, by mode
+	factor                    [maxDegrees]float64 // by mode, over one step of time
+	watch                     [maxDegrees]watched // by mode, 1 K of it
+	keep                      int                 // modes worth looking at
+	factored                  int                 // how many of factor are known
+	step                      float64             // s, that factor belongs to
+	carried                   int                 // steps of time since the exponentials were taken
+	held                      [2][2]watched       // by medium (one a face): of its response s, and w
+	moving                    bool                // a medium changes within sg
+	tau                       float64             // s since the start of the segment
+	rest                      watched             // what the media hold
+	now                       watched             // °C
+	looks                     int                 // how often all nodes were looked at in the step
+	restGrid                  []float64           // what the media hold, at the nodes, if gridded
+	restLine                  [maxDegrees]float64 // what the media hold as polynomials, if restLined
+	line                      []float64           // the whole field as polynomials, if lined
+	lineMem                   [maxDegrees]float64 // for line
+	gridded, restLined, lined bool
+	cold, hot                 float64 // where the coldest and hottest place were found last between nodes
+	known                     profile
+	near                      nearby
+}
+
+// watched are the temperatures that are asked at every sample.
+type watched struct{ mean, first, last, centre float64 }
+
+// add adds f times others.
+func (w *watched) add(f float64, o *watched) {
+	w.mean += f * o.mean
+	w.first += f * o.first
+	w.last += f * o.last
+	w.centre += f * o.centre
 }
 
 // profile is what is known of the gradient along the axis. It obeys the heat equation too, so along the axis it cannot change its sign more
@@ -50,47 +67,40 @@ type profile struct {
 
 // sampleLine fills samples of a field with one axis, as Sample does for any, with less work.
 func (f *tensor) sampleLine(h *History, s *Samples) {
-	n, g := f.axes[0].n, len(h.body.buf)
-	mem := make([]float64, 4*n+g)
-	w := lineSampler{f: f, b: h.body, amp: mem[:n], factor: mem[n : 2*n], line: mem[2*n : 3*n], restLine: mem[3*n : 4*n], rest: mem[4*n:]}
-	span, last := 0, 0.0
+	w := lineSampler{f: f, b: h.body}
+	span, before := 0, 0.0
 	for k, t := range s.TimesS {
 		for span < len(h.Spans)-1 && t > h.Spans[span].EndS {
 			span++
 		}
-		mean := w.moveTo(t, t-last)
-		last = t
+		w.moveTo(t, t-before)
+		before = t
 		low, high, ok := w.follow()
 		if !ok {
 			low, high = w.look()
 		}
 		hull := h.hull[span]
-		centre := w.first
-		if f.axes[0].kind == planeFull {
-			centre = w.node(w.b.order[0])
-		}
-		s.Points[0][k], s.Mean[k] = clamp(centre, hull), clamp(mean, hull)
+		s.Points[0][k], s.Mean[k] = clamp(w.now.centre, hull), clamp(w.now.mean, hull)
 		s.Coldest[k], s.ColdestAt[k].UpM = clamp(low.c, hull), low.x[0]*w.b.radii[0]
 		s.Hottest[k], s.HottestAt[k].UpM = clamp(high.c, hull), high.x[0]*w.b.radii[0]
 	}
 }
 
-// moveTo brings the modes to the instant t, d seconds after the last, and gives the mean.
-func (w *lineSampler) moveTo(t, d float64) (mean float64) {
+// moveTo brings the modes and what is watched to the instant t, d seconds after the last.
+func (w *lineSampler) moveTo(t, d float64) {
 	fresh := w.sg == nil || t > w.sg.t1
 	if w.from = w.at; fresh {
 		w.at = w.f.segAt(t)
 		w.sg = &w.f.segs[w.at]
+		w.moving = w.sg.moves()
 	}
 	sg, st := w.sg, w.sg.step
-	tau := min(max(t-sg.t0, 0), sg.t1-sg.t0)
-	w.tau = tau
+	w.tau = min(max(t-sg.t0, 0), sg.t1-sg.t0)
+	if w.of != st {
+		w.begin(st)
+	}
 	if fresh || w.carried == anew {
-		w.f.gridValues(st)
-		if w.of != st {
-			w.of, w.factored = st, 0
-		}
-		w.keep, w.carried = decays(st.ax[0].rate, tau, w.amp), 0
+		w.keep, w.carried = decays(st.ax[0].rate, w.tau, w.amp[:w.f.axes[0].n]), 0
 		for i, c := range sg.c[:w.keep] {
 			w.amp[i] *= c
 		}
@@ -105,36 +115,74 @@ func (w *lineSampler) moveTo(t, d float64) (mean float64) {
 		for i, x := range w.factor[:w.keep] {
 			w.amp[i] *= x
 		}
-		for w.keep > 1 && math.Abs(w.amp[w.keep-1]) < 1e-12 {
-			w.keep--
-		}
 	}
-	if fresh || sg.moves() {
-		w.rested, w.restMean, w.restLined = false, sg.restMean(tau), false
+	for w.keep > 1 && math.Abs(w.amp[w.keep-1]) < faint {
+		w.keep--
 	}
 	w.lined = false
-	amp := w.amp[:w.keep]
-	mean = w.restMean
-	for i, v := range st.e0[0][:len(amp)] {
-		mean += v * amp[i]
+	if fresh || w.moving {
+		w.gridded, w.restLined = false, false
+		w.rest = w.resting()
 	}
-	w.first, w.last = w.node(0), w.node(len(w.b.buf)-1)
-	return mean
+	now := w.rest
+	for i, a := range w.amp[:w.keep] {
+		now.add(a, &w.watch[i])
+	}
+	w.now = now
 }
 
-// node is the temperature at a node.
-func (w *lineSampler) node(g int) float64 {
-	sg, n := w.sg, w.f.axes[0].n
-	sum := 0.0
-	for m := range sg.step.held {
-		r := &sg.step.held[m]
-		sum += r.s[g]*(sg.level[m]+sg.slope[m]*w.tau) - r.w[g]*sg.slope[m]
+// begin makes what belongs to one step.
+func (w *lineSampler) begin(st *tensorStep) {
+	w.of, w.factored, w.looks = st, 0, 0
+	w.f.polynomialResponses(st)
+	ax := w.f.axes[0]
+	n, phi, b := ax.n, w.b.nodes.phi[0], st.ax[0].b
+	first, last, centre := phi[:n], phi[len(phi)-n:], phi[w.b.order[0]*n:][:n]
+	watch := w.watch[:n]
+	clear(watch)
+	for m := range first {
+		p, q, r := first[m], last[m], centre[m]
+		for i, v := range b[m*n:][:n] {
+			watch[i].first += p * v
+			watch[i].last += q * v
+			watch[i].centre += r * v
+		}
 	}
-	amp := w.amp[:w.keep]
-	for i, v := range sg.step.gridB[0][g*n:][:len(amp)] {
-		sum += v * amp[i]
+	for i, v := range st.e0[0] {
+		watch[i].mean = v
+	}
+	at := func(line []float64, mean float64) watched {
+		sum := watched{mean: mean}
+		for m, v := range line {
+			sum.add(v, &watched{0, first[m], last[m], centre[m]})
+		}
+		return sum
+	}
+	for g, r := range st.lines {
+		w.held[g] = [2]watched{at(r.s, st.meanS[g]), at(r.w, st.meanW[g])}
+	}
+}
+
+// resting gives of what is watched what the media hold.
+func (w *lineSampler) resting() (sum watched) {
+	for g, slope := range w.sg.slope {
+		h := &w.held[g]
+		sum.add(w.sg.level[g]+slope*w.tau, &h[0])
+		if slope != 0 {
+			sum.add(-slope, &h[1])
+		}
 	}
 	return sum
+}
+
+// restPolynomials gives what the media hold as polynomials.
+func (w *lineSampler) restPolynomials() []float64 {
+	line := w.restLine[:w.f.axes[0].n]
+	if !w.restLined {
+		w.restLined = true
+		w.sg.mix(w.tau, line, w.sg.step.lines)
+	}
+	return line
 }
 
 // gradients gives the signs of the gradient at the two ends of the axis, from where the media lie; ok is false where that is not clear.
@@ -153,9 +201,9 @@ func (w *lineSampler) gradients() (lower, upper int, ok bool) {
 		}
 		return -1, true
 	}
-	upper, ok = into(sg.step.up, w.last)
+	upper, ok = into(sg.step.up, w.now.last)
 	if ok && w.f.axes[0].kind == planeFull {
-		lower, ok = into(sg.step.lo, w.first)
+		lower, ok = into(sg.step.lo, w.now.first)
 	}
 	return -lower, upper, ok
 }
@@ -193,48 +241,65 @@ func (w *lineSampler) follow() (low, high extreme, ok bool) {
 	}
 	xs := w.b.nodes.x[0]
 	last := len(xs) - 1
-	low, high = extreme{w.first, coord{xs[0]}}, extreme{w.last, coord{xs[last]}}
+	low, high = extreme{w.now.first, coord{xs[0]}}, extreme{w.now.last, coord{xs[last]}}
 	if low.c > high.c {
 		low, high = high, low
 	}
 	if k.turns == 0 {
 		return low, high, high.c-low.c > clearK
 	}
-	w.polynomials()
-	v := valley{lo: xs[0], hi: xs[last], start: w.cold}
 	if k.upper > 0 { // a valley
-		low.c, low.x[0] = v.newton(w.f.axes[0].base, w.line, 1)
-		w.cold = low.x[0]
-		return low, high, true
+		low.c, low.x[0] = w.inner(1, &w.cold)
+	} else {
+		high.c, high.x[0] = w.inner(-1, &w.hot)
 	}
-	v.start = w.hot
-	high.c, high.x[0] = v.newton(w.f.axes[0].base, w.line, -1)
-	w.hot = high.x[0]
 	return low, high, true
 }
 
 // look fills the nodes, finds the coldest and hottest place among and between them, and remembers what is known of the field by that.
 func (w *lineSampler) look() (low, high extreme) {
 	st := w.sg.step
-	if !w.rested {
-		w.rested = true
-		w.sg.mix(w.tau, w.rest, st.held)
-	}
-	copy(w.b.buf, w.rest)
-	addRows(w.b.buf, st.gridB[0], w.f.axes[0].n, w.amp[:w.keep])
+	w.fill()
 	low, high, turns := w.ends()
 	w.known = profile{}
 	lower, upper, clear := w.gradients()
 	inside := func(e extreme) bool { return !slices.Contains(w.b.nodes.x[0], e.x[0]) }
-	rise := math.Copysign(1, w.b.buf[len(w.b.buf)-1]-w.b.buf[0])
+	rise := w.b.buf[len(w.b.buf)-1] - w.b.buf[0]
+	if math.Abs(rise) <= flatK { // rounding: the faces tell
+		rise = 0
+	}
 	switch {
 	case !clear || turns > 1:
-	case turns == 0 && rise*float64(lower) >= 0 && rise*float64(upper) >= 0: // else a layer at a face is too thin for the nodes
+	case turns == 0 && lower*upper >= 0 && rise*float64(lower) >= 0 && rise*float64(upper) >= 0: // else a layer at a face is too thin for the nodes
 		w.known = profile{st, lower, upper, 0}
 	case turns == 1 && lower*upper < 0 && st.lo.group == st.up.group && (upper > 0 && inside(low) || upper < 0 && inside(high)):
 		w.known = profile{st, lower, upper, 1}
 	}
 	return low, high
+}
+
+// manyLooks is how often all nodes are looked at in a step by way of the polynomials before the modes at the nodes are made.
+const manyLooks = 8
+
+// fill fills the nodes.
+func (w *lineSampler) fill() {
+	st, n := w.sg.step, w.f.axes[0].n
+	if w.looks++; w.looks <= manyLooks && st.gridB[0] == nil {
+		w.polynomials()
+		clear(w.b.buf)
+		addRows(w.b.buf, w.b.nodes.phi[0], n, w.line)
+		return
+	}
+	w.f.gridValues(st)
+	if w.restGrid == nil {
+		w.restGrid = make([]float64, len(w.b.buf))
+	}
+	if !w.gridded {
+		w.gridded = true
+		w.sg.mix(w.tau, w.restGrid, st.held)
+	}
+	copy(w.b.buf, w.restGrid)
+	addRows(w.b.buf, st.gridB[0], n, w.amp[:w.keep])
 }
 
 // addRows adds to each out the product of a row of m (n wide) with v, of which there may be fewer than n: four rows at a time,
@@ -379,15 +444,11 @@ func (w *lineSampler) polynomials() {
 		return
 	}
 	w.lined = true
-	st := w.sg.step
-	if !w.restLined {
-		w.restLined = true
-		w.sg.mix(w.tau, w.restLine, st.lines)
-	}
-	n := len(w.restLine)
-	w.line = w.line[:n]
-	copy(w.line, w.restLine)
-	addRows(w.line, st.ax[0].b, n, w.amp[:w.keep])
+	rest := w.restPolynomials()
+	n := len(rest)
+	w.line = w.lineMem[:n]
+	copy(w.line, rest)
+	addRows(w.line, w.sg.step.ax[0].b, n, w.amp[:w.keep])
 	for n > 3 && math.Abs(w.line[n-1]) < 1e-9 { // what has smoothed out needs few polynomials
 		n--
 	}
