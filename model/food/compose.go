@@ -1,5 +1,5 @@
 // Package food turns a food's composition into its thermal behaviour, and holds a table of foods with their sources.
-// Units: per cent by mass, °C, kg/m³, W/(m·K), J/(kg·K). Unfrozen food only.
+// Units: per cent by mass, °C, kg/m³, W/(m·K), J/(kg·K), J/kg.
 package food
 
 import (
@@ -25,6 +25,10 @@ const (
 	mostSum  = 103
 )
 
+// coldestFreezing is the freezing point, °C, below which no food is believed: the polynomials of ice end there, and the saltiest
+// brine of the kitchen freezes at −21 °C (common knowledge, no source).
+const coldestFreezing = LowC
+
 // mostAir is the largest share of air, %: above it pores join and the rule for closed pores fails.
 const mostAir = 50
 
@@ -33,12 +37,13 @@ const measuredAtC = 20
 
 // Composition is what a food is made of, per cent by mass. Carbohydrate is without fibre, as on European labels; a label or a table
 // that gives total carbohydrate, as American ones do, includes fibre: take it off first.
-// At most one of the last two is given; nil means blank.
+// At most one of air and density is given; nil means blank.
 type Composition struct {
 	WaterPc, ProteinPc, FatPc, CarbohydratePc, FibrePc, AshPc float64
 
 	AirByVolumePc *float64 // air in closed pores, % of the volume
 	DensityKgM3   *float64 // as measured, air included
+	FreezingC     *float64 // initial freezing point, °C, below 0 and above −40; nil: not known, and nothing is said below it
 }
 
 // parts lists the components with their column headings, in the order of mix.
@@ -105,8 +110,10 @@ func (fs Faults) Error() string {
 	return strings.Join(lines, "\n")
 }
 
-// Compose gives the unfrozen thermal behaviour of a food from its composition, for −40 to 150 °C; source says where the composition
-// comes from. The error, if any, is of type Faults and names every column that is wrong.
+// Compose gives the thermal behaviour of a food from its composition, for −40 to 150 °C; source says where the composition comes from.
+// With a freezing point, and water that can freeze, the behaviour below it is that of the freezing food and EnthalpyJkg and IceShare are
+// set; otherwise they are nil and what Props gives below 0 °C is the food without ice. The error, if any, is of type Faults and names
+// every column that is wrong.
 func Compose(name, source string, c Composition) (model.Material, error) {
 	faults := c.check()
 	if strings.TrimSpace(source) == "" {
@@ -119,18 +126,24 @@ func Compose(name, source string, c Composition) (model.Material, error) {
 	if len(faults) > 0 {
 		return model.Material{}, faults
 	}
-	return model.Material{
-		Name:   name,
-		Source: source + "; " + Method,
-		Props: func(t float64) model.Properties {
-			return model.Properties{KWmK: m.conductivity(t), RhoKgM3: m.density(t), CJkgK: m.specificHeat(t)}
-		},
+	material := model.Material{
+		Name:        name,
+		Source:      source + "; " + Method,
+		Props:       m.properties,
 		LowC:        LowC,
 		HighC:       HighC,
 		Composed:    true,
 		Composition: c.String(),
 		Waterless:   c.WaterPc == 0,
-	}, nil
+	}
+	if c.FreezingC != nil {
+		tf := *c.FreezingC
+		material.FreezingC = &tf
+		if z, ok := m.freezing(tf); ok {
+			material.Props, material.EnthalpyJkg, material.IceShare = z.properties, z.enthalpy, z.ice
+		}
+	}
+	return material, nil
 }
 
 // check holds every figure to its range and the sum to 97–103 %.
@@ -155,6 +168,10 @@ func (c Composition) check() Faults {
 	}
 	if d := c.DensityKgM3; d != nil && !(*d > 0 && !math.IsInf(*d, 0)) {
 		faults = append(faults, Fault{"Density", fmt.Sprintf("%g kg/m³ is not a density", *d), "give the measured mass over the volume, or leave it blank"})
+	}
+	if f := c.FreezingC; f != nil && !(*f < 0 && *f > coldestFreezing) {
+		faults = append(faults, Fault{"Freezing point", fmt.Sprintf("%s °C is not the freezing point of a food", short(*f)),
+			fmt.Sprintf("give the temperature at which ice begins to form, below 0 and above %d °C, or leave it blank", coldestFreezing)})
 	}
 	if c.AirByVolumePc != nil && c.DensityKgM3 != nil {
 		faults = append(faults, Fault{"Density", "both Air by volume and Density are given, and each follows from the other", "leave one of them blank"})

@@ -197,8 +197,17 @@ func TestFoods(t *testing.T) {
 			t.Errorf("%s: %v", f.Name, err)
 			continue
 		}
+		if (m.EnthalpyJkg != nil) != (f.FreezingC != nil) || (m.IceShare != nil) != (f.FreezingC != nil) {
+			t.Errorf("%s: a known freezing point and the heat content through it go together", f.Name)
+		}
 		for _, tc := range []float64{LowC, 0, 20, 100, HighC} {
 			p := m.Props(tc)
+			if f.FreezingC != nil && tc < 0 { // frozen
+				if !(p.KWmK > 0.9 && p.KWmK < 2.3 && p.RhoKgM3 > 1000 && p.RhoKgM3 < 1100 && p.CJkgK > 1800 && p.CJkgK < 2700) {
+					t.Errorf("%s at %g °C: %+v", f.Name, tc, p)
+				}
+				continue
+			}
 			if !(p.KWmK > 0.15 && p.KWmK < 0.8 && p.RhoKgM3 > 850 && p.RhoKgM3 < 1400 && p.CJkgK > 1800 && p.CJkgK < 4300) {
 				t.Errorf("%s at %g °C: %+v", f.Name, tc, p)
 			}
@@ -277,6 +286,10 @@ func TestRefusedCompositions(t *testing.T) {
 		{"no source", " ", beef, "Source"},
 		{"mostly air", "label", with(func(c *Composition) { c.AirByVolumePc = v(50.5) }), "Air by volume"},
 		{"air and density", "label", with(func(c *Composition) { c.AirByVolumePc, c.DensityKgM3 = v(5), v(1000) }), "Density"},
+		{"freezing point of nought", "label", with(func(c *Composition) { c.FreezingC = v(0) }), "Freezing point"},
+		{"freezing point above nought", "label", with(func(c *Composition) { c.FreezingC = v(28.9) }), "Freezing point"},
+		{"freezing point of a deep freezer", "label", with(func(c *Composition) { c.FreezingC = v(-40) }), "Freezing point"},
+		{"freezing point not a number", "label", with(func(c *Composition) { c.FreezingC = v(math.NaN()) }), "Freezing point"},
 		{"density zero", "label", with(func(c *Composition) { c.DensityKgM3 = v(0) }), "Density"},
 		{"density in g/cm³", "label", with(func(c *Composition) { c.DensityKgM3 = v(1.05) }), "Density"},
 		{"density of a stone", "label", with(func(c *Composition) { c.DensityKgM3 = v(1250) }), "Density"},

@@ -13,9 +13,8 @@ import (
 
 // Food is a built-in food.
 type Food struct {
-	Name, Group string
-	Composition
-	FreezingC      *float64    // initial freezing point, °C; nil where no published figure was read
+	Name, Group    string
+	Composition                // its FreezingC is nil where no published figure was read
 	Source         string      // of the composition; never empty
 	FreezingSource string      // of the freezing point; empty without one
 	Flow           *model.Flow // whether it moves by itself when it is left still: our own judgement
@@ -76,8 +75,6 @@ func (f Food) Material() model.Material {
 	}
 	m.Flow, m.SetForm = f.Flow, setForms[f.Name]
 	if f.FreezingC != nil {
-		t := *f.FreezingC
-		m.FreezingC = &t
 		m.Source += "; freezing point: " + f.FreezingSource
 	}
 	return m

@@ -169,7 +169,7 @@ func (f *food) compose() {
 		}
 	}
 	m, err := foods.Compose(f.name, l.source, foods.Composition{WaterPc: v[0], ProteinPc: v[1], FatPc: v[2], CarbohydratePc: v[3], FibrePc: v[4], AshPc: v[5],
-		AirByVolumePc: l.air, DensityKgM3: l.rho})
+		AirByVolumePc: l.air, DensityKgM3: l.rho, FreezingC: l.freezing})
 	var faults foods.Faults
 	switch {
 	case errors.As(err, &faults):
