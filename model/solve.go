@@ -32,6 +32,9 @@ func Solve(p Product, steps []Step, o Options) (*History, error) {
 	s := &solver{product: &p, steps: steps, options: o, tmp: scratches.Get().(*scratch)}
 	defer scratches.Put(s.tmp)
 	s.layOut()
+	if s.marches() {
+		return s.march()
+	}
 	for more := 0; ; more++ {
 		h := s.run(more)
 		if len(s.refused) > 0 {
@@ -60,6 +63,7 @@ type solver struct {
 	main    field
 	tmp     *scratch    // for what does not outlive the solution
 	refused cell.Errors // found while solving
+	laws    []*law      // of the foods, by layer; made when a march needs them
 }
 
 // layOut finds the axes of the product.
@@ -527,7 +531,7 @@ func (m *Course) meanC(durS float64) float64 {
 // raised gives a medium with everything below the freezing point raised to it, where the stage allows that, and notes it in span.
 func (s *solver) raised(st *Step, e *Exposure, span *Span) Course {
 	m := e.Medium
-	tf := s.product.Food.FreezingC
+	tf := s.product.raisedTo()
 	if tf == nil || !raises(st.Stage) {
 		return m
 	}

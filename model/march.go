@@ -1,0 +1,413 @@
+package model
+
+import (
+	"fmt"
+	"math"
+
+	"slowpoint/model/cell"
+)
+
+// What cannot be solved exactly in time is marched: properties that follow the temperature, freezing, films that follow the surface,
+// radiation, evaporation. The unknown is the heat content of control volumes or nodes, so heat is conserved whatever the steps.
+
+// A marcher holds the state of a food in time and steps it.
+type marcher interface {
+	// surround changes what the faces meet; skins are asked for by face, nil for the only one.
+	surround(skins func(*Face) *skin)
+	// begin takes the state over at a change of surroundings, tau s into the step.
+	begin(tau float64)
+	// try makes a step of length d from tau and estimates its error, K; the state changes only by accept.
+	try(tau, d float64) float64
+	accept()
+	// keep writes the state into a track.
+	keep(k *track, t float64)
+	// firstS is a length for the first step after a change, s.
+	firstS() float64
+	// span gives the coldest and hottest temperature of the state, °C.
+	span() (low, high float64)
+	// save and restore keep a copy of the state.
+	save()
+	restore()
+}
+
+// marches tells whether the product has to be marched: whether anything in it follows the temperature.
+func (s *solver) marches() bool {
+	for _, f := range s.product.Foods() {
+		if f.Table || f.Composed {
+			return true
+		}
+	}
+	for i := range s.steps {
+		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
+			if e.reacts() {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// effort is how finely a march is made.
+type effort struct {
+	nodes float64 // factor on the number of nodes
+	tolK  float64 // error of a step in time, K
+}
+
+// rougher is the effort of the second march, that the error is estimated with: half the nodes and six times the tolerance make about four
+// times the error, as both are of second order (a step's error of third order, so that their sum goes with the tolerance to 2/3).
+func (e effort) rougher() effort { return effort{e.nodes / 2, e.tolK * 6} }
+
+// march solves the product by marching, with more effort until the estimate of the error meets its goal.
+func (s *solver) march() (*History, error) {
+	const goal = 0.019
+	e := effort{1, 1e-3}
+	for more := 0; ; more++ {
+		h, fine := s.marchOnce(e)
+		if len(s.refused) > 0 {
+			return nil, s.refused
+		}
+		chain := s.chain
+		_, rough := s.marchOnce(e.rougher())
+		s.chain = chain
+		s.main = fine
+		h.ErrorK = max(1e-5, fine.differs(h, rough)/marchedWorse)
+		if h.ErrorK <= goal || more == 3 {
+			s.boiling(h)
+			return h, nil
+		}
+		worse := math.Sqrt(h.ErrorK / goal)
+		e.nodes *= min(2, 1.15*worse)
+		e.tolK /= min(6, 1.3*worse*worse)
+	}
+}
+
+// marchedWorse divides the difference of the two marches: with four times the error the rougher one lies three errors off.
+const marchedWorse = 2.3
+
+// marchOnce runs the whole chain.
+func (s *solver) marchOnce(e effort) (*History, *marched) {
+	h := &History{Product: s.product, Points: append([]Point{{Name: "centre"}}, s.product.Points...)}
+	f := s.newMarched(e)
+	h.body = f.body
+	h.field = f
+	s.main, s.chain = f, nil
+	t := 0.0
+	for i := range s.steps {
+		span := Span{Step: &s.steps[i], StartS: t}
+		low, _ := f.state.span()
+		s.airQuestion(&s.steps[i], low)
+		if len(s.refused) > 0 {
+			return nil, nil
+		}
+		cs := s.marchStep(f, &span, e.tolK)
+		s.chain = append(s.chain, cs)
+		t += cs.durS
+		span.EndS = t
+		h.Spans = append(h.Spans, span)
+		if span.MediumFromC != nil && h.Bound == "" {
+			h.Bound = fmt.Sprintf("a chill medium of %.1f °C was raised to the freezing point, %.1f °C: the food is at or below the temperatures shown until it freezes", *span.MediumFromC, *span.MediumToC)
+			h.BoundFromS = span.StartS
+		}
+	}
+	s.finish(h)
+	for i := range h.Spans {
+		sp := &h.Spans[i]
+		h.hull[i][0], h.hull[i][1] = f.track.reach(sp.StartS, sp.EndS)
+		s.described(sp, h.hull[i])
+	}
+	s.outside(h)
+	h.Method = f.method()
+	return h, f
+}
+
+// described fills what a report says of a span: its properties in the middle of the temperatures of the food.
+func (s *solver) described(sp *Span, hull [2]float64) {
+	if s.product.Food == nil {
+		return
+	}
+	sp.PropsAtC = (min(hull[0], boilingLimitC) + min(hull[1], boilingLimitC)) / 2
+	sp.Props = s.props(sp.PropsAtC)
+}
+
+// outsideK is how far a temperature may leave the rows of a table of properties, K.
+const outsideK = 0.05
+
+// outside refuses a food of which the temperatures leave its table of properties.
+func (s *solver) outside(h *History) {
+	for _, f := range s.product.Foods() {
+		if !f.Table {
+			continue
+		}
+		low, high := math.Inf(1), math.Inf(-1)
+		for _, r := range h.hull {
+			low, high = min(low, r[0]), max(high, r[1])
+		}
+		if low < f.LowC-outsideK || high > f.HighC+outsideK {
+			s.refused.Add(cell.Error{At: f.At, Field: "At temperature", Typed: fmt.Sprintf("%g to %g °C", f.LowC, f.HighC),
+				Msg:  fmt.Sprintf("the food %s gets as cold as %.1f °C and as hot as %.1f °C, and its properties are not given there", f.Name, low, high),
+				Hint: "add rows for these temperatures, or one row alone for a constant"})
+		}
+	}
+}
+
+// marchStep runs one step into the track.
+func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
+	st := span.Step
+	cs := &chainStep{durS: st.DurationS, knots: []float64{0}}
+	made := map[*Exposure]*skin{}
+	skins := func(face *Face) *skin {
+		e := &st.Exposure
+		if face != nil {
+			e = st.on(face)
+		}
+		if k, ok := made[e]; ok {
+			return k
+		}
+		if e == &st.Exposure {
+			face = nil
+		}
+		own := *e
+		own.Medium = s.raised(st, e, span)
+		k := s.skinOf(&own, st)
+		made[e] = k
+		if !e.Surface.NoMedium {
+			cs.group(own.Medium, st.DurationS)
+		}
+		span.Films = append(span.Films, k.used(face))
+		return k
+	}
+	f.state.surround(skins)
+	f.state.begin(0)
+	f.state.keep(f.track, span.StartS)
+	tau, d := 0.0, min(f.state.firstS(), st.DurationS/8)
+	for next := 1; tau < cs.durS; {
+		for next < len(cs.knots) && cs.knots[next] <= tau {
+			next++
+		}
+		end := st.DurationS
+		if next < len(cs.knots) {
+			end = min(end, cs.knots[next])
+		}
+		use := d
+		if rest := end - tau; use >= rest*(1-1e-9) {
+			use = rest
+		} else if use > rest/2 {
+			use = rest / 2
+		}
+		if st.UntilC != nil {
+			f.state.save()
+		}
+		err := f.state.try(tau, use)
+		if err > 2*tolK && use > 1e-7 {
+			d = use * max(0.1, min(0.5, 0.9*math.Cbrt(tolK/err)))
+			continue
+		}
+		f.state.accept()
+		from := tau
+		if tau += use; use == end-from {
+			tau = end
+		}
+		f.state.keep(f.track, span.StartS+tau)
+		if grow := max(0.2, min(2.5, 0.9*math.Cbrt(tolK/err))); grow >= 1 {
+			d = max(d, use*grow)
+		} else {
+			d = use * grow
+		}
+		if st.UntilC != nil && f.there(*st.UntilC, st.Stage.Heats) {
+			cs.durS = f.arrive(*st.UntilC, st.Stage.Heats, span.StartS, from)
+			reached := true
+			span.Reached = &reached
+			return cs
+		}
+	}
+	if st.UntilC != nil {
+		reached := false
+		span.Reached = &reached
+	}
+	return cs
+}
+
+// there tells whether the slowest place has reached a temperature.
+func (f *marched) there(goal float64, heats bool) bool {
+	low, high := f.state.span()
+	if heats {
+		return low >= goal
+	}
+	return high <= goal
+}
+
+// arrive finds when, between the last two instants of the track, the slowest place reached a temperature, and steps there again; from is
+// where the last step began, s into the chain's step that began at start.
+func (f *marched) arrive(goal float64, heats bool, start, from float64) float64 {
+	k := f.track
+	lo, hi := start+from, k.times[len(k.times)-1]
+	now := make([]float64, k.n)
+	for hi-lo > 1e-4 {
+		mid := (lo + hi) / 2
+		k.all(k.find(mid), now)
+		low, high := now[0], now[0]
+		for _, c := range now {
+			low, high = min(low, c), max(high, c)
+		}
+		if heats && low >= goal || !heats && high <= goal {
+			hi = mid
+		} else {
+			lo = mid
+		}
+	}
+	hi = max(hi, start+1e-3) // a step of no length cannot be drawn or judged
+	k.cut(len(k.times) - 1)
+	f.state.restore()
+	f.state.try(from, hi-start-from)
+	f.state.accept()
+	f.state.keep(k, hi)
+	return hi - start
+}
+
+// marched is a field that was marched: the track of its nodes, and what stands between them.
+type marched struct {
+	body  *body
+	state marcher
+	track *track
+	mesh  mesh
+	now   marchedShot
+}
+
+// mesh is the shape of a field between its nodes.
+type mesh interface {
+	// at gives the temperature of a place from those of the nodes.
+	at(x coord, nodes []float64) float64
+	// weights of the nodes in the volume mean; they add up to 1.
+	weights() []float64
+	// words for the report
+	String() string
+}
+
+func (f *marched) course(x coord, times, out []float64) {
+	now := f.now.c
+	for i, t := range times {
+		f.track.all(f.track.find(t), now)
+		out[i] = f.mesh.at(x, now)
+	}
+}
+
+// marchedShot is a marched field at one instant.
+type marchedShot struct {
+	f *marched
+	c []float64
+}
+
+func (f *marched) at(t float64) snapshot {
+	f.track.all(f.track.find(t), f.now.c)
+	return &f.now
+}
+
+func (s *marchedShot) grid(out []float64) { copy(out, s.c) }
+
+func (s *marchedShot) slice(axis int, x coord, node [3]int, out []float64) {
+	panic("model: a marched field has no polynomials")
+}
+
+func (s *marchedShot) mean() float64 {
+	sum := 0.0
+	for i, w := range s.f.mesh.weights() {
+		sum += w * s.c[i]
+	}
+	return sum
+}
+
+func (f *marched) run(*chainStep) { panic("model: a march is made as a whole") }
+func (f *marched) pop()           { panic("model: a march is made as a whole") }
+
+func (f *marched) method() string {
+	return "conduction by heat content, marched in time; " + f.mesh.String()
+}
+
+// differs gives the largest difference from a rougher march at its nodes, from settle after each change on.
+func (f *marched) differs(h *History, rough *marched) float64 {
+	worst := 0.0
+	fine := make([]float64, f.track.n)
+	other := make([]float64, rough.track.n)
+	for i := range h.Spans {
+		sp := &h.Spans[i]
+		for tau := h.settle; ; tau *= 1.25 {
+			t := min(sp.StartS+tau, sp.EndS)
+			f.track.all(f.track.find(t), fine)
+			rough.track.all(rough.track.find(min(t, rough.track.times[len(rough.track.times)-1])), other)
+			for j := range fine {
+				worst = max(worst, math.Abs(fine[j]-rough.mesh.at(f.body.node(j), other)))
+			}
+			if t == sp.EndS {
+				break
+			}
+		}
+	}
+	return worst
+}
+
+// newMarched lays out the march of a product.
+func (s *solver) newMarched(e effort) *marched {
+	laws := s.lawsOf()
+	f := &marched{track: &track{}}
+	if s.used <= 1 {
+		kind, r := s.kinds[0], s.radii[0]
+		if s.used == 0 {
+			kind, r = lumped, s.product.Size.VolumeM3/s.product.Size.AreaM2
+		}
+		g := newLineGrid(s.product, kind, r, int(math.Round(s.lineNodes()*e.nodes)))
+		m := newLineMarch(g, laws)
+		m.lower, m.upper = s.faces[0][0], s.faces[0][1]
+		m.fill(s.product.StartC)
+		f.state, f.mesh = m, newLineMesh(g)
+		nd := &nodes{x: [3][]float64{make([]float64, len(g.x)), {0}, {0}}}
+		for i, x := range g.x {
+			nd.x[0][i] = x / g.r
+		}
+		f.body = newBody(s.kinds, s.radii, nd)
+	}
+	f.body.pieces = true
+	f.track.n = f.body.nodes.count()
+	f.now = marchedShot{f, make([]float64, f.track.n)}
+	return f
+}
+
+// lawsOf makes the laws of the foods, by layer; they are made once for all marches of the product.
+func (s *solver) lawsOf() []*law {
+	if s.laws == nil {
+		made := map[*Material]*law{}
+		of := func(m *Material) *law {
+			if made[m] == nil {
+				made[m] = newLaw(m, s.options.ConductivityFactor)
+			}
+			return made[m]
+		}
+		if s.product.Food != nil {
+			s.laws = append(s.laws, of(s.product.Food))
+		}
+		for i := range s.product.Layers {
+			s.laws = append(s.laws, of(s.product.Layers[i].Food))
+		}
+	}
+	return s.laws
+}
+
+// lineNodes is how many volumes a half axis gets at first.
+func (s *solver) lineNodes() float64 { return 48 }
+
+// skinOf makes the skin of a face.
+func (s *solver) skinOf(e *Exposure, st *Step) *skin {
+	fc := filmCase{shape: s.product.Shape, size: s.product.Size, foodC: 20, mediumC: 20, altitudeM: st.AltitudeM}
+	return &skin{held: e.Surface == Held, insulated: e.Surface.NoMedium, e: e, f: e.filmUsed(nil, &fc), law: e.Surface.law}
+}
+
+// raisedTo is the freezing point that chill media are raised to: the highest of the foods that are not calculated through freezing; nil if
+// there is none.
+func (p *Product) raisedTo() *float64 {
+	var high *float64
+	for _, f := range p.Foods() {
+		if f.FreezingC != nil && !f.freezes() && (high == nil || *f.FreezingC > *high) {
+			high = f.FreezingC
+		}
+	}
+	return high
+}
