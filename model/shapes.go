@@ -33,7 +33,6 @@ type Surface struct {
 	NoMedium   bool     // it has no temperature
 	Published  string   // published film coefficients with their source, the low end first, in words
 	film       func(*filmCase) (w float64, source string)
-	law        func(surfaceC, tau float64) (w, slope float64)
 }
 
 // The surroundings.
