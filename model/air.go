@@ -20,19 +20,42 @@ func pressurePa(altitudeM float64) float64 {
 	return 101325 * math.Pow(1-2.25577e-5*altitudeM, 5.25588)
 }
 
-// airAt gives dry air at tC °C and a height above the sea. Viscosity and conductivity by Sutherland's law with the constants of
+// Range of the properties of air, °C.
+const airLowC, airHighC = -40, 250
+
+// airAt gives dry air at tC °C and a height above the sea.
+func airAt(tC, altitudeM float64) air { return airOf(tC, pressurePa(altitudeM)) }
+
+// airOf gives dry air at tC °C and a pressure. Viscosity and conductivity by Sutherland's law with the constants of
 // White, Viscous Fluid Flow, tables 1-2 and 1-3 (from memory): within 2 % between -40 and 250 °C. Density: ideal gas, 287.05 J/(kg·K).
-func airAt(tC, altitudeM float64) air {
+func airOf(tC, pa float64) air {
 	t := tC + 273.15
-	law := func(at0, s float64) float64 { return at0 * math.Pow(t/273.15, 1.5) * (273.15 + s) / (t + s) }
-	return air{rho: pressurePa(altitudeM) / (287.05 * t), mu: law(1.716e-5, 110.4), k: law(0.0241, 194), cp: 1006, beta: 1 / t}
+	x := t / 273.15
+	x *= math.Sqrt(x)
+	return air{rho: pa / (287.05 * t), mu: 1.716e-5 * x * (273.15 + 110.4) / (t + 110.4), k: 0.0241 * x * (273.15 + 194) / (t + 194), cp: 1006, beta: 1 / t}
 }
 
-// boilingC is the temperature in °C at which water boils at a height in m: Antoine's equation for water, 1…100 °C, in mmHg
-// (8.07131, 1730.63, 233.426; from memory), within 0.1 K.
-func boilingC(altitudeM float64) float64 {
-	return 1730.63/(8.07131-math.Log10(pressurePa(altitudeM)/133.322)) - 233.426
+// correlation is a published formula for the Nusselt number, and where it holds.
+type correlation struct {
+	name    string
+	nusselt func(x, pr float64) float64 // x: the Rayleigh number of free convection, the Reynolds number of forced
+	least   func(pr float64) float64    // smallest x; nil: its low end is that of a surface in air at rest
+	most    float64                     // largest x: beyond, the value there is kept
+	held    string                      // what that means, in words
 }
+
+// The correlations. Their formulas stand below, with their sources.
+var (
+	freeCylinder = correlation{name: "Churchill & Chu 1975 (horizontal cylinder in still air, taken at the largest size, Rayleigh number up to 1e12)", nusselt: churchillChu, most: 1e12}
+	freeSphere   = correlation{name: "Churchill 1983 (sphere in still air, Rayleigh number up to 1e13)", nusselt: sphereFree, most: 1e13}
+
+	forcedCylinder = correlation{name: "Churchill & Bernstein 1977 (cylinder in cross flow, Reynolds × Prandtl number from 0.2, Reynolds number up to 1e7)", nusselt: churchillBernstein,
+		least: func(pr float64) float64 { return 0.2 / pr }, most: 1e7, held: "whose value there is kept, which is low"}
+	forcedSphere = correlation{name: "Melissari & Argyropoulos 2005 (sphere, Reynolds number 100 to 50000)", nusselt: sphereForced,
+		least: func(float64) float64 { return 100 }, most: 5e4, held: "whose value there is kept, which is low"}
+	forcedPlate = correlation{name: "flat plate along the stream (Incropera & DeWitt, laminar formula, a lower bound from Reynolds number 5e5 on)", nusselt: plateForced,
+		least: func(float64) float64 { return 0 }, most: math.Inf(1)}
+)
 
 // churchillBernstein is the Nusselt number of a cylinder in cross flow, on its diameter, for Re·Pr > 0.2
 // (Churchill & Bernstein 1977, J. Heat Transfer 99:300-306); a lower bound of the data for Re·Pr > 0.4.
@@ -43,9 +66,8 @@ func churchillBernstein(re, pr float64) float64 {
 
 // sphereForced is the Nusselt number of a sphere in a stream, on its diameter, 100 ≤ Re ≤ 50000, 0.003 ≤ Pr ≤ 10
 // (Melissari & Argyropoulos 2005, Int. J. Heat Mass Transfer; year and journal from memory).
-// Above Re 50000 the value there is kept, which is low.
 func sphereForced(re, pr float64) float64 {
-	return 2 + 0.47*math.Sqrt(min(re, 5e4))*math.Pow(pr, 0.36)
+	return 2 + 0.47*math.Sqrt(re)*math.Pow(pr, 0.36)
 }
 
 // plateForced is the mean Nusselt number of a flat plate along a stream, on its length, with the laminar formula throughout

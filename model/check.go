@@ -44,7 +44,8 @@ func Check(p Product, steps []Step) cell.Errors {
 // exposures gives the different surroundings of a step that the shape has a face for.
 func exposures(s *Shape, st *Step) []*Exposure {
 	left := false // a face that keeps the step's own surroundings
-	var out []*Exposure
+	out := make([]*Exposure, 1, 1+len(s.Faces))
+	out[0] = &st.Exposure
 	for _, f := range s.Faces {
 		if e := st.on(f); e == &st.Exposure {
 			left = true
@@ -53,9 +54,9 @@ func exposures(s *Shape, st *Step) []*Exposure {
 		}
 	}
 	if left || len(s.Faces) == 0 {
-		out = append([]*Exposure{&st.Exposure}, out...)
+		return out
 	}
-	return out
+	return out[1:]
 }
 
 // on gives the surroundings of a face.
@@ -95,18 +96,47 @@ func (c *checker) shape() {
 	}
 }
 
+// food looks at the food of the product, or at those of its layers.
 func (c *checker) food() {
 	p := c.product
-	f := p.Food
-	if f == nil {
-		if p.Shape.Refused == "" {
-			c.add(p.At, "Food", "", "no food is given", "type the name of a built-in food or of a row of Foods")
-		}
-		return
+	switch {
+	case p.Shape == LayeredSlab:
+		c.layers()
+	case p.Food == nil && p.Shape.Refused == "":
+		c.add(p.At, "Food", "", "no food is given", "type the name of a built-in food or of a row of Foods")
+	case p.Food != nil:
+		c.foodAt(p.Food, p.At)
 	}
+}
+
+// layers looks at the layers of a layered slab.
+func (c *checker) layers() {
+	p := c.product
+	if len(p.Layers) == 0 {
+		c.add(p.At, "Shape", p.Shape.Name, "has no layers", "add a row of the sheet Layers for each")
+	}
+	told := map[*Material]bool{}
+	for i := range p.Layers {
+		y := &p.Layers[i]
+		if !(y.ThicknessM > 0) || math.IsInf(y.ThicknessM, 0) {
+			c.add(y.At, "Thickness", "", "a layer needs a thickness, a number above 0", "")
+		}
+		switch {
+		case y.Food == nil:
+			c.add(y.At, "Food", "", "no food is given", "type the name of a built-in food or of a row of Foods")
+		case !told[y.Food]:
+			told[y.Food] = true
+			c.foodAt(y.Food, y.At)
+		}
+	}
+}
+
+// foodAt looks at a food that the row at names.
+func (c *checker) foodAt(f *Material, row cell.Ref) {
+	p := c.product
 	at, field := f.At, "Flows"
 	if at.IsZero() { // a built-in food has no row of its own
-		at, field = p.At, "Food"
+		at, field = row, "Food"
 	}
 	typed := func(flow *Flow) string {
 		if field == "Food" {
@@ -125,11 +155,11 @@ func (c *checker) food() {
 		c.mixes()
 		return
 	}
-	switch f.Flow {
-	case FlowsYes:
+	switch {
+	case f.Flow == FlowsYes:
 		c.add(at, field, typed(f.Flow), says+"mixes by itself when left still; conduction does not describe that", instead)
-	case FlowsThick:
-		c.add(at, field, typed(f.Flow), says+"may mix by itself while it is hot; conduction alone does not describe that", instead)
+	case f.Flow == FlowsThick && p.Shape == LayeredSlab: // of other shapes a second run takes it as well mixed
+		c.add(at, field, typed(f.Flow), says+"may mix by itself while it is hot; conduction alone does not describe that, and a layer cannot be taken as well mixed", instead)
 	}
 	if f.freezes() {
 		return
@@ -284,10 +314,17 @@ func wetOrDry(found *cell.Errors, e *Exposure) {
 
 // cold looks for media below the freezing point.
 func (c *checker) cold(st *Step, e *Exposure, field string, low float64) {
-	f := c.product.Food
-	if f == nil {
-		return
+	for _, f := range c.product.Foods() {
+		n := len(c.found)
+		c.coldFor(f, st, e, field, low)
+		if len(c.found) > n { // of layers the first
+			return
+		}
 	}
+}
+
+// coldFor does so for one food.
+func (c *checker) coldFor(f *Material, st *Step, e *Exposure, field string, low float64) {
 	typed := fmt.Sprintf("%g °C", low)
 	if f.FreezingC == nil {
 		if low < unfrozenC {

@@ -28,6 +28,23 @@ func TestCheckTakesASoundProduct(t *testing.T) {
 	}
 }
 
+// layered makes two layers of one food of a slab.
+func layered(p *Product) {
+	for i, mm := range []float64{12, 31} {
+		p.Layers = append(p.Layers, Layer{At: cell.Ref{Sheet: "Layers", Row: 2 + i}, Food: p.Food, ThicknessM: mm / 1000})
+	}
+	p.Shape, p.Food = LayeredSlab, nil
+}
+
+// A thick food is calculated as conducting; who asks for it runs it as well mixed too.
+func TestCheckTakesAThickFood(t *testing.T) {
+	p, steps := plain()
+	p.Food.Flow = FlowsThick
+	if found := Check(p, steps); len(found) > 0 {
+		t.Error(found)
+	}
+}
+
 // Every refusal: what is changed in a sound product, where the message must stand and what it must say.
 func TestCheckRefuses(t *testing.T) {
 	for _, c := range []struct {
@@ -43,7 +60,31 @@ func TestCheckRefuses(t *testing.T) {
 		{"no food", func(p *Product, _ []Step) { p.Food = nil }, "Products row 2", "Food", "no food"},
 		{"properties that follow the temperature", func(p *Product, _ []Step) { p.Food.Table = true }, "Foods row 7", "At temperature", "several temperatures"},
 		{"liquid", func(p *Product, _ []Step) { p.Food.Flow = FlowsYes }, "Foods row 7", "Flows", "mixes by itself"},
-		{"thick liquid", func(p *Product, _ []Step) { p.Food.Flow = FlowsThick }, "Foods row 7", "Flows", "may mix by itself"},
+		{"thick liquid as a layer", func(p *Product, _ []Step) {
+			p.Food.Flow = FlowsThick
+			layered(p)
+		}, "Foods row 7", "Flows", "may mix by itself"},
+		{"liquid as a layer", func(p *Product, _ []Step) {
+			p.Food.Flow = FlowsYes
+			layered(p)
+		}, "Foods row 7", "Flows", "mixes by itself"},
+		{"no layers", func(p *Product, _ []Step) { p.Shape, p.Food = LayeredSlab, nil }, "Products row 2", "Shape", "has no layers"},
+		{"a layer without a food", func(p *Product, _ []Step) {
+			layered(p)
+			p.Layers[1].Food = nil
+		}, "Layers row 3", "Food", "no food"},
+		{"a layer without a thickness", func(p *Product, _ []Step) {
+			layered(p)
+			p.Layers[1].ThicknessM = 0
+		}, "Layers row 3", "Thickness", "above 0"},
+		{"layers that start frozen", func(p *Product, _ []Step) {
+			layered(p)
+			p.StartC = -18
+		}, "Products row 2", "Start temperature", "starts frozen"},
+		{"a layer that could freeze", func(p *Product, s []Step) {
+			layered(p)
+			s[1].Medium.C = []float64{-4}
+		}, "Steps row 3", "Temperature", "freezing point is not known"},
 		{"frozen start", func(p *Product, _ []Step) { p.StartC = -18 }, "Products row 2", "Start temperature", "starts frozen"},
 		{"point outside", func(p *Product, _ []Step) {
 			p.Points = []Point{{At: cell.Ref{Sheet: "Points", Row: 4}, Name: "probe", Place: Place{UpM: 0.03}}}

@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"strings"
 )
 
 // filmCase is what a film coefficient may depend on. Temperatures: the mean of the coldest and hottest food in the step,
@@ -22,7 +23,7 @@ const openWidthM = 0.5
 // lengthM is the largest size across the air: the largest gives the lowest film, the safe side for heating and for chilling.
 func (c *filmCase) lengthM() float64 {
 	switch c.shape {
-	case Slab:
+	case Slab, LayeredSlab:
 		return openWidthM
 	case Stirred: // the cube of the same volume
 		return math.Cbrt(c.size.VolumeM3)
@@ -34,43 +35,117 @@ func (c *filmCase) at() string {
 	return fmt.Sprintf("food surface %.1f °C, air %.1f °C", c.foodC, c.mediumC)
 }
 
+// airFilm is convection in air over a shape, without radiation: free, or the larger of free and forced.
+type airFilm struct {
+	lengthM, airMS, totalPa float64
+	free, forced            *correlation // forced: nil in still air, and below its range
+	below                   *correlation // the forced one that is left out because the air is too slow for it; nil usually
+}
+
+// newAirFilm takes the correlations that fit a case. Whether the air is too slow for the forced one is decided by the air alone, so that
+// the film does not jump while the surface warms.
+func newAirFilm(moving bool, c *filmCase) *airFilm {
+	f := &airFilm{lengthM: c.lengthM(), totalPa: pressurePa(c.altitudeM), free: &freeCylinder}
+	if c.shape == Sphere {
+		f.free = &freeSphere
+	}
+	if !moving {
+		return f
+	}
+	f.airMS = c.airMS
+	switch c.shape {
+	case Slab, LayeredSlab:
+		f.forced = &forcedPlate
+	case Sphere:
+		f.forced = &forcedSphere
+	default:
+		f.forced = &forcedCylinder
+	}
+	if a := airOf(c.mediumC, f.totalPa); f.reynolds(&a) < f.forced.least(a.pr()) {
+		f.below, f.forced = f.forced, nil
+	}
+	return f
+}
+
+func (f *airFilm) reynolds(a *air) float64 { return f.airMS * f.lengthM / a.nu() }
+
+func (f *airFilm) rayleigh(a *air, differenceK float64) float64 {
+	return gravity * a.beta * math.Abs(differenceK) * f.lengthM * f.lengthM * f.lengthM / (a.nu() * a.nu()) * a.pr()
+}
+
+const gravity = 9.80665 // m/s²
+
+// at gives the film in W/(m²·K), with the air at the mean of surface and medium.
+func (f *airFilm) at(surfaceC, airC float64) float64 {
+	w, _ := f.which(surfaceC, airC)
+	return w
+}
+
+// which also tells the correlation that decides.
+func (f *airFilm) which(surfaceC, airC float64) (w float64, by *correlation) {
+	a := airOf(max((surfaceC+airC)/2, airLowC), f.totalPa)
+	ra := f.rayleigh(&a, surfaceC-airC)
+	w, by = f.free.nusselt(min(ra, f.free.most), a.pr())*a.k/f.lengthM, f.free
+	if f.forced == nil {
+		return w, by
+	}
+	if forced := f.forced.nusselt(min(f.reynolds(&a), f.forced.most), a.pr()) * a.k / f.lengthM; forced >= w {
+		return forced, f.forced
+	}
+	return w, by
+}
+
+// words describes the correlation that decides at a state, in its range.
+func (f *airFilm) words(surfaceC, airC float64) string {
+	_, by := f.which(surfaceC, airC)
+	at := fmt.Sprintf("%.0f mm", 1000*f.lengthM)
+	if by == f.forced {
+		at = fmt.Sprintf("at %.2g m/s, %.0f mm", f.airMS, 1000*f.lengthM)
+	}
+	return fmt.Sprintf("%s %s", by.name, at)
+}
+
+// beyond says where a state between two surface temperatures leaves the range of a correlation, and what was done; "" if none does.
+func (f *airFilm) beyond(lowC, highC, airC float64) string {
+	var says []string
+	add := func(format string, args ...any) { says = append(says, fmt.Sprintf(format, args...)) }
+	if f.below != nil {
+		add("air of %.2g m/s is below the range of %s, so that it counts as still", f.airMS, f.below.name)
+	}
+	cold, hot := airOf(max((lowC+airC)/2, airLowC), f.totalPa), airOf((highC+airC)/2, f.totalPa)
+	if f.forced != nil && f.reynolds(&cold) > f.forced.most {
+		add("Reynolds number %.2g is above the range of %s (%.2g), %s", f.reynolds(&cold), f.forced.name, f.forced.most, f.forced.held)
+	}
+	if ra := max(f.rayleigh(&cold, lowC-airC), f.rayleigh(&hot, highC-airC)); ra > f.free.most {
+		add("Rayleigh number %.2g is above the range of %s (%.2g), whose value there is kept, which is low", ra, f.free.name, f.free.most)
+	}
+	if (lowC+airC)/2 < airLowC || (highC+airC)/2 > airHighC {
+		add("air properties are known from %d to %d °C (mean of surface and air); below, those of the low end are taken, above, the formulas go on", airLowC, airHighC)
+	}
+	return strings.Join(says, "; ")
+}
+
 // stillAir gives the film of free convection in air without radiation.
 func stillAir(c *filmCase) (w float64, source string) {
-	film := (c.foodC + c.mediumC) / 2
-	a := airAt(film, c.altitudeM)
-	l := c.lengthM()
-	ra := 9.80665 * a.beta * math.Abs(c.foodC-c.mediumC) * l * l * l / (a.nu() * a.nu()) * a.pr()
-	if c.shape == Sphere {
-		return sphereFree(ra, a.pr()) * a.k / l, fmt.Sprintf("Churchill 1983 (sphere in still air, diameter %.0f mm), without radiation; %s", 1000*l, c.at())
-	}
-	return churchillChu(ra, a.pr()) * a.k / l, fmt.Sprintf("Churchill & Chu 1975 (horizontal cylinder in still air, taken at the largest size, %.0f mm), without radiation; %s", 1000*l, c.at())
+	return newAirFilm(false, c).stated(c)
 }
 
 // movingAir gives the film of forced convection in air without radiation, never less than that of still air.
 func movingAir(c *filmCase) (w float64, source string) {
-	film := (c.foodC + c.mediumC) / 2
-	a := airAt(film, c.altitudeM)
-	l := c.lengthM()
-	re := c.airMS * l / a.nu()
-	how := fmt.Sprintf("at %.2g m/s, %.0f mm, without radiation; %s", c.airMS, 1000*l, c.at())
-	switch c.shape {
-	case Slab:
-		w, source = plateForced(re, a.pr())*a.k/l, "flat plate along the stream (Incropera & DeWitt) "+how
-	case Sphere:
-		w, source = sphereForced(re, a.pr())*a.k/l, "Melissari & Argyropoulos 2005 (sphere) "+how
-	default:
-		w, source = churchillBernstein(re, a.pr())*a.k/l, "Churchill & Bernstein 1977 (cylinder in cross flow) "+how
-	}
-	if still, from := stillAir(c); still > w {
-		return still, from
-	}
-	return w, source
+	return newAirFilm(true, c).stated(c)
+}
+
+func (f *airFilm) stated(c *filmCase) (w float64, source string) {
+	return f.at(c.foodC, c.mediumC), f.words(c.foodC, c.mediumC) + ", without radiation; " + c.at()
 }
 
 // stated makes a film that does not depend on the case.
 func stated(w float64, source string) func(*filmCase) (float64, string) {
 	return func(*filmCase) (float64, string) { return w, source }
 }
+
+// innerWords tells of the film inside a vessel.
+var innerWords = fmt.Sprintf("; inside the vessel %d W/(m²·K) in series, stated low: textbooks give 50 to 100 for liquids left still (Çengel, Heat Transfer, typical values), and stirring makes it more", innerW)
 
 // filmUsed tells how an exposure meets the food.
 func (e *Exposure) filmUsed(face *Face, c *filmCase) FilmUsed {
@@ -90,10 +165,9 @@ func (e *Exposure) filmUsed(face *Face, c *filmCase) FilmUsed {
 		u.FilmW, u.Source = e.Surface.film(c)
 		u.Caution = "film coefficient assumed, not measured"
 	}
-	r := 0.0
-	if e.WrapM2KW != nil {
-		r = *e.WrapM2KW
+	if e.innerFilm(c) {
+		u.Source += innerWords
 	}
-	u.TotalW = 1 / (1/u.FilmW + r)
+	u.TotalW = 1 / (1/u.FilmW + e.seriesM2KW(c))
 	return u
 }

@@ -35,8 +35,8 @@ type lineSampler struct {
 	looks                     int                 // how often all nodes were looked at in the step
 	restGrid                  []float64           // what the media hold, at the nodes, if gridded
 	restLine                  [maxDegrees]float64 // what the media hold as polynomials, if restLined
-	line                      []float64           // the whole field as polynomials, if lined
-	lineMem                   [maxDegrees]float64 // for line
+	line                      [maxDegrees]float64 // the whole field as polynomials, if lined
+	lineLen                   int                 // how many of line are worth looking at
 	gridded, restLined, lined bool
 	cold, hot                 float64 // where the coldest and hottest place were found last between nodes
 	known                     profile
@@ -287,7 +287,7 @@ func (w *lineSampler) fill() {
 	if w.looks++; w.looks <= manyLooks && st.gridB[0] == nil {
 		w.polynomials()
 		clear(w.b.buf)
-		addRows(w.b.buf, w.b.nodes.phi[0], n, w.line)
+		addRows(w.b.buf, w.b.nodes.phi[0], n, w.line[:w.lineLen])
 		return
 	}
 	w.f.gridValues(st)
@@ -432,7 +432,7 @@ func (w *lineSampler) beside(node int, sign float64, near *float64) extreme {
 	if *near <= v.lo || *near >= v.hi {
 		v = valleyOf(b.around(at, sign))
 	}
-	if c, to := v.newton(w.f.axes[0].base, w.line, sign); sign*c < sign*e.c-1e-12 {
+	if c, to := v.newton(w.f.axes[0].base, w.line[:w.lineLen], sign); sign*c < sign*e.c-1e-12 {
 		e.c, e.x[0], *near = c, to, to
 	}
 	return e
@@ -446,11 +446,11 @@ func (w *lineSampler) polynomials() {
 	w.lined = true
 	rest := w.restPolynomials()
 	n := len(rest)
-	w.line = w.lineMem[:n]
-	copy(w.line, rest)
-	addRows(w.line, w.sg.step.ax[0].b, n, w.amp[:w.keep])
-	for n > 3 && math.Abs(w.line[n-1]) < 1e-9 { // what has smoothed out needs few polynomials
+	line := w.line[:n]
+	copy(line, rest)
+	addRows(line, w.sg.step.ax[0].b, n, w.amp[:w.keep])
+	for n > 3 && math.Abs(line[n-1]) < 1e-9 { // what has smoothed out needs few polynomials
 		n--
 	}
-	w.line = w.line[:n]
+	w.lineLen = n
 }

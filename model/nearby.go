@@ -41,7 +41,7 @@ func (w *lineSampler) inner(sign float64, last *float64) (c, x float64) {
 	w.polynomials()
 	xs := w.b.nodes.x[0]
 	v := valley{lo: xs[0], hi: xs[len(xs)-1], start: *last}
-	c, x = v.newton(w.f.axes[0].base, w.line, sign)
+	c, x = v.newton(w.f.axes[0].base, w.line[:w.lineLen], sign)
 	if math.Abs(x-*last) < nearMove {
 		w.near.settle(w, x)
 	}
@@ -105,7 +105,7 @@ func (l *nearby) extreme(w *lineSampler, sign float64) (c, x float64, ok bool) {
 		if h2 := h * h; !(math.Abs(q[5]*h2*h2*h) < nearK) || math.Abs(l.x+h) >= 1 {
 			return 0, 0, false
 		}
-		if math.Abs(d) < 1e-5 {
+		if math.Abs(d) < 3e-4 {
 			l.h = h
 			return q[0] + h*(q[1]+h*(q[2]+h*(q[3]+h*(q[4]+h*q[5])))), l.x + h, true
 		}

@@ -20,85 +20,96 @@ func rankOne(mem *slab, d, v []float64, rho float64) (mu, q, g []float64) {
 		return mu, q, g
 	}
 	sum := 0.0
-	for _, x := range v {
-		sum += x * x
+	v2 := mem.take(n)
+	for k, x := range v {
+		v2[k] = x * x
+		sum += v2[k]
 	}
 	gap := q // gap[k*n+j] = d[k] - mu[j], to full relative accuracy; turned into q below
 	for j := range d {
-		from, delta := secularRoot(d, v, rho, sum, j)
+		from, delta := secularRoot(d, v2, rho, sum, j)
 		mu[j] = d[from] + delta
 		for k := range d {
 			gap[k*n+j] = (d[k] - d[from]) - delta
 		}
 	}
+	norm := g // for now
 	for k := range d {
-		// ẑ² = Π(mu_j - d_k)/Π(d_j - d_k), each factor positive by interlacing
-		z := (-gap[k*n+n-1]) / rho
-		for j := 0; j < n-1; j++ {
-			den := d[j] - d[k]
-			if j >= k {
-				den = d[j+1] - d[k]
+		// ẑ² = Π(mu_j - d_k)/Π(d_j - d_k), each factor positive by interlacing; three at a time, for fewer divisions
+		row, others := gap[k*n:][:n], 1.0
+		z := (-row[n-1]) / rho
+		for j, x := range row[:n-1] {
+			z *= x
+			if j < k {
+				others *= d[k] - d[j]
+			} else {
+				others *= d[k] - d[j+1]
 			}
-			z *= -gap[k*n+j] / den
+			if j%3 == 2 {
+				z, others = z/others, 1
+			}
 		}
-		z = math.Copysign(math.Sqrt(math.Abs(z)), v[k])
-		for j := 0; j < n; j++ {
-			q[k*n+j] = z / gap[k*n+j]
+		z = math.Copysign(math.Sqrt(math.Abs(z/others)), v[k])
+		for j, x := range row {
+			x = z / x
+			row[j] = x
+			norm[j] += x * x
 		}
 	}
-	for j := 0; j < n; j++ {
-		norm := 0.0
-		for k := 0; k < n; k++ {
-			norm += q[k*n+j] * q[k*n+j]
+	for j, x := range norm {
+		g[j] = -1 / math.Sqrt(x) // rho Σ v²/(d-mu)/norm, and the sum is -1/rho
+	}
+	for k := range d {
+		row := q[k*n:][:n]
+		for j, x := range g {
+			row[j] *= -x
 		}
-		norm = math.Sqrt(norm)
-		for k := 0; k < n; k++ {
-			q[k*n+j] /= norm
-		}
-		g[j] = -1 / norm // rho Σ v²/(d-mu)/norm, and the sum is -1/rho
 	}
 	return mu, q, g
 }
 
-// secularRoot finds the j-th eigenvalue as d[from]+delta.
-func secularRoot(d, v []float64, rho, sum float64, j int) (from int, delta float64) {
+// secularRoot finds the j-th eigenvalue as d[from]+delta; v2 are the squares of v, and sum is their sum.
+func secularRoot(d, v2 []float64, rho, sum float64, j int) (from int, delta float64) {
 	n := len(d)
 	// the interval, measured from its left end
 	width := rho * sum
 	if j < n-1 {
 		width = d[j+1] - d[j]
 	}
-	f := func(from int, x float64) float64 {
-		s := 1 / rho
-		for k := range d {
-			s += v[k] * v[k] / ((d[k] - d[from]) - x)
-		}
-		return s
-	}
 	from = j
 	lo, hi := 0.0, width
+	x := width / 2
 	if j < n-1 {
-		if f(j, width/2) < 0 { // the zero lies in the right half
-			from, lo, hi = j+1, -width/2, 0
-		} else {
-			hi = width / 2
+		s, half := 1/rho, width/2
+		for k, z := range v2 {
+			s += z / ((d[k] - d[j]) - half)
 		}
-	}
-	x := (lo + hi) / 2
-	if j == n-1 && n > 1 {
+		// the zero between the two poles if the others stay as they are in the middle
+		left, right := v2[j], v2[j+1]
+		rest := s + (left-right)/half
+		a, b := rest*width+left+right, left*width
+		if hi = half; s < 0 { // it lies in the right half
+			from, lo, hi = j+1, -half, 0
+			a, b = left+right-rest*width, -right*width
+		}
+		x = (lo + hi) / 2
+		if first := smallRoot(a, b, rest); first > lo && first < hi {
+			x = first
+		}
+	} else if n > 1 {
 		x = width * 0.999999
 	}
 	for it := 0; it < 80; it++ {
 		below, above, left, right := 0.0, 0.0, 0.0, 0.0 // poles up to j give negative terms, the others positive ones
-		for k, z := range v[:j+1] {
+		for k, z := range v2[:j+1] {
 			r := 1 / ((d[k] - d[from]) - x)
-			t := z * z * r
+			t := z * r
 			below += t
 			left += t * r
 		}
 		for k := j + 1; k < n; k++ {
 			r := 1 / ((d[k] - d[from]) - x)
-			t := v[k] * v[k] * r
+			t := v2[k] * r
 			above += t
 			right += t * r
 		}
@@ -116,13 +127,7 @@ func secularRoot(d, v []float64, rho, sum float64, j int) (from int, delta float
 		a := (dl+dr)*s - dl*dr*(left+right)
 		b := dl * dr * s
 		c := s - dl*left - dr*right
-		disc := math.Sqrt(max(0, a*a-4*b*c))
-		var eta float64
-		if a <= 0 {
-			eta = (a - disc) / (2 * c)
-		} else {
-			eta = 2 * b / (a + disc)
-		}
+		eta := smallRoot(a, b, c)
 		next := x + eta
 		if !(next > lo && next < hi) {
 			next = (lo + hi) / 2
@@ -134,4 +139,13 @@ func secularRoot(d, v []float64, rho, sum float64, j int) (from int, delta float
 		}
 	}
 	return from, x
+}
+
+// smallRoot is the root of c·x² - a·x + b = 0 that goes to b/a with b, without cancellation.
+func smallRoot(a, b, c float64) float64 {
+	disc := math.Sqrt(max(0, a*a-4*b*c))
+	if a <= 0 {
+		return (a - disc) / (2 * c)
+	}
+	return 2 * b / (a + disc)
 }

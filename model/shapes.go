@@ -33,6 +33,7 @@ type Surface struct {
 	NoMedium   bool     // it has no temperature
 	Published  string   // published film coefficients with their source, the low end first, in words
 	film       func(*filmCase) (w float64, source string)
+	law        func(surfaceC, tauS float64) (w, slope float64) // heat into the food in W/m² and its slope; for tests: it stands for everything
 }
 
 // The surroundings.
@@ -53,7 +54,7 @@ var (
 		film: stated(1000, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 (Çengel, Heat Transfer, typical values): food conducts so badly that more makes no difference"),
 		Help: "water at the boil"}
 	Steam = &Surface{Name: "steam", May: []string{"Film coefficient", "Wrap resistance"},
-		film: stated(1000, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 for pure condensing steam (Çengel, Heat Transfer, typical values); air in the steam lowers it strongly"),
+		film: stated(steamW, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 for pure condensing steam (Çengel, Heat Transfer, typical values); air in the steam lowers it strongly"),
 		Help: "condensing steam, air vented: the temperature is that of the steam's own pressure"}
 	ContactPlate = &Surface{Name: "contact plate", Needs: []string{"Wrap resistance"},
 		Help: "a plate pressed on; its contact goes into Wrap resistance"}
@@ -62,6 +63,9 @@ var (
 
 	Surfaces = []*Surface{Film, StillAir, MovingAir, WaterBath, StirredWater, BoilingWater, Steam, ContactPlate, Held, Insulated}
 )
+
+// steamW is the film of condensing steam, W/(m²·K).
+const steamW = 1000
 
 // waterBathW is the film taken in water left still, W/(m²·K).
 const waterBathW = 30

@@ -4,7 +4,11 @@
 // It reads no files and prints nothing.
 package model
 
-import "slowpoint/model/cell"
+import (
+	"slices"
+
+	"slowpoint/model/cell"
+)
 
 // Stage is what a step is for.
 type Stage struct {
@@ -178,4 +182,19 @@ type Product struct {
 	StartC float64
 	Points []Point // extra places; the centre is always known
 	Inches bool    // its sizes were typed in inches or feet: lengths in words stand in inches, with mm in brackets
+}
+
+// Foods are the foods of a product, each once: the only one, or those of its layers from the top. Missing ones are left out.
+func (p *Product) Foods() []*Material {
+	var out []*Material
+	add := func(m *Material) {
+		if m != nil && !slices.Contains(out, m) {
+			out = append(out, m)
+		}
+	}
+	add(p.Food)
+	for i := range p.Layers {
+		add(p.Layers[i].Food)
+	}
+	return out
 }

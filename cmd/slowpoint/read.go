@@ -4,10 +4,12 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"strings"
 
 	"github.com/spf13/cobra"
 
 	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model"
 	"slowpoint/model/cell"
 	"slowpoint/model/unit"
 )
@@ -56,11 +58,20 @@ func understood(w io.Writer, p *workbook.Plan) {
 			}
 			steps += fmt.Sprintf("%s %s", q.Steps[k].Name, minutes(q.Steps[k].DurationS))
 		}
-		fmt.Fprintf(w, "  %s: %s, %s from %s; %s\n", q.Name, q.Shape.Name, q.Product.Food.Name, ownScale(q.StartC, p.Fahrenheit), steps)
+		fmt.Fprintf(w, "  %s: %s, %s from %s; %s\n", q.Name, q.Shape.Name, foodsOf(&q.Product), ownScale(q.StartC, p.Fahrenheit), steps)
 	}
 	for _, n := range p.NotCalculated {
 		fmt.Fprintf(w, "  %s: not calculated (%s)\n", n.Product, count(n.Because.Faults(), "error"))
 	}
+}
+
+// foodsOf names the food of a product, or those of its layers.
+func foodsOf(p *model.Product) string {
+	var names []string
+	for _, f := range p.Foods() {
+		names = append(names, f.Name)
+	}
+	return strings.Join(names, " + ")
 }
 
 // ownScale writes a temperature, °C, in the scale that the plan shows temperatures in.

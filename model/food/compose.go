@@ -29,8 +29,11 @@ const (
 // brine of the kitchen freezes at −21 °C (common knowledge, no source).
 const coldestFreezing = LowC
 
-// mostAir is the largest share of air, %: above it pores join and the rule for closed pores fails.
-const mostAir = 50
+// The largest share of air, %, in closed pores, above which pores join and the rule for closed ones fails, and in pores that join.
+const (
+	mostAir       = 50
+	mostJoinedAir = 95
+)
 
 // measuredAtC is the temperature at which a measured density is taken to hold.
 const measuredAtC = 20
@@ -41,8 +44,9 @@ const measuredAtC = 20
 type Composition struct {
 	WaterPc, ProteinPc, FatPc, CarbohydratePc, FibrePc, AshPc float64
 
-	AirByVolumePc *float64 // air in closed pores, % of the volume
+	AirByVolumePc *float64 // air, % of the volume
 	DensityKgM3   *float64 // as measured, air included
+	PoresJoin     bool     // the air is in pores that join, as in bread; one of the two above is needed then
 	FreezingC     *float64 // initial freezing point, °C, below 0 and above −40; nil: not known, and nothing is said below it
 }
 
@@ -163,8 +167,8 @@ func (c Composition) check() Faults {
 		}
 		faults = append(faults, Fault{"Water", fmt.Sprintf("the composition adds up to %s %%, and %d to %d %% is accepted", short(sum), leastSum, mostSum), hint})
 	}
-	if a := c.AirByVolumePc; a != nil && !(*a >= 0 && *a <= mostAir) {
-		faults = append(faults, Fault{"Air by volume", fmt.Sprintf("%g %% is outside 0 to %d %%", *a, mostAir), "for a looser food give measured conductivity, density and specific heat"})
+	if a := c.AirByVolumePc; a != nil && !(*a >= 0 && *a <= c.mostAir()) {
+		faults = append(faults, Fault{"Air by volume", fmt.Sprintf("%g %% is outside 0 to %.0f %%", *a, c.mostAir()), "for a looser food give measured conductivity, density and specific heat"})
 	}
 	if d := c.DensityKgM3; d != nil && !(*d > 0 && !math.IsInf(*d, 0)) {
 		faults = append(faults, Fault{"Density", fmt.Sprintf("%g kg/m³ is not a density", *d), "give the measured mass over the volume, or leave it blank"})
@@ -173,16 +177,27 @@ func (c Composition) check() Faults {
 		faults = append(faults, Fault{"Freezing point", fmt.Sprintf("%s °C is not the freezing point of a food", short(*f)),
 			fmt.Sprintf("give the temperature at which ice begins to form, below 0 and above %d °C, or leave it blank", coldestFreezing)})
 	}
+	if c.PoresJoin && c.AirByVolumePc == nil && c.DensityKgM3 == nil {
+		faults = append(faults, Fault{"Density", "the food holds much air in its pores, and how much does not follow from its composition", "give its measured mass over its volume"})
+	}
 	if c.AirByVolumePc != nil && c.DensityKgM3 != nil {
 		faults = append(faults, Fault{"Density", "both Air by volume and Density are given, and each follows from the other", "leave one of them blank"})
 	}
 	return faults
 }
 
+// mostAir is the largest share of air for its kind of pores, %.
+func (c Composition) mostAir() float64 {
+	if c.PoresJoin {
+		return mostJoinedAir
+	}
+	return mostAir
+}
+
 // mix scales the composition to mass fractions and finds the share of air: as given, or from the measured density. A density up to 5 %
 // above what the components give without air is within the scatter of analyses and taken as no air; above that it contradicts them.
 func (c Composition) mix() (*mix, Faults) {
-	m, sum := &mix{}, c.SumPc()
+	m, sum, most := &mix{joined: c.PoresJoin}, c.SumPc(), c.mostAir()
 	for i, p := range c.parts() {
 		m.x[i] = p.pc / sum
 	}
@@ -191,9 +206,9 @@ func (c Composition) mix() (*mix, Faults) {
 		m.air = *c.AirByVolumePc / 100
 	case c.DensityKgM3 != nil:
 		m.air = 1 - *c.DensityKgM3*m.specificVolume(measuredAtC)
-		if m.air < -0.05 || m.air > mostAir/100. {
-			return nil, Faults{{"Density", fmt.Sprintf("%s kg/m³ does not go with the composition, which gives %.0f kg/m³ without air and %.0f with %d %% of it",
-				short(*c.DensityKgM3), 1/m.specificVolume(measuredAtC), (1-mostAir/100.)/m.specificVolume(measuredAtC), mostAir), "check the density and its unit, or give measured conductivity, density and specific heat"}}
+		if m.air < -0.05 || m.air > most/100 {
+			return nil, Faults{{"Density", fmt.Sprintf("%s kg/m³ does not go with the composition, which gives %.0f kg/m³ without air and %.0f with %.0f %% of it",
+				short(*c.DensityKgM3), 1/m.specificVolume(measuredAtC), (1-most/100)/m.specificVolume(measuredAtC), most), "check the density and its unit, or give measured conductivity, density and specific heat"}}
 		}
 		m.air = math.Max(m.air, 0)
 	}

@@ -56,6 +56,7 @@ func readFoods(text string) []Food {
 			t := number(8)
 			f.FreezingC = &t
 		}
+		f.PoresJoin = row[12] == "joined"
 		f.Flow = model.FlowsNo
 		for _, flow := range model.Flows {
 			if row[11] == flow.Name {
@@ -67,29 +68,65 @@ func readFoods(text string) []Food {
 	return foods
 }
 
-// Material is the food's thermal behaviour.
+// Airy tells that the food holds much air, and how much is not published with its composition: it needs a measured density, by Weighed.
+func (f Food) Airy() bool { return f.PoresJoin }
+
+// Material is the food's thermal behaviour; of an airy food it may not be asked.
 func (f Food) Material() model.Material {
-	m, err := Compose(f.Name, f.Source, f.Composition)
+	m, err := f.made(f.Source)
 	if err != nil {
 		panic(err) // our own table; a test composes every row
+	}
+	return m
+}
+
+// Weighing is what a user measured of a built-in food.
+type Weighing struct {
+	DensityKgM3 float64  // air included
+	FreezingC   *float64 // °C; nil: the built-in figure, if there is one
+	Source      string   // who measured
+}
+
+// Weighed is the food's thermal behaviour with the density, and perhaps the freezing point, that was measured. An error is of type Faults.
+func (f Food) Weighed(w Weighing) (model.Material, error) {
+	f.DensityKgM3 = &w.DensityKgM3
+	if w.FreezingC != nil {
+		f.FreezingC, f.FreezingSource = w.FreezingC, w.Source
+	}
+	return f.made(f.Source + "; density: " + w.Source)
+}
+
+func (f Food) made(source string) (model.Material, error) {
+	m, err := Compose(f.Name, source, f.Composition)
+	if err != nil {
+		return m, err
 	}
 	m.Flow, m.SetForm = f.Flow, setForms[f.Name]
 	if f.FreezingC != nil {
 		m.Source += "; freezing point: " + f.FreezingSource
 	}
-	return m
+	return m, nil
 }
 
-// Named finds a built-in food by its name; capitals and extra spaces do not matter. The material is the caller's own.
-func Named(name string) (*model.Material, bool) {
+// Find finds a built-in food by its name; capitals and extra spaces do not matter.
+func Find(name string) (Food, bool) {
 	want := plain(name)
 	for _, f := range Foods {
 		if plain(f.Name) == want {
-			m := f.Material()
-			return &m, true
+			return f, true
 		}
 	}
-	return nil, false
+	return Food{}, false
+}
+
+// Named is the behaviour of a built-in food by its name, as Find; false too for one that is airy. The material is the caller's own.
+func Named(name string) (*model.Material, bool) {
+	f, ok := Find(name)
+	if !ok || f.Airy() {
+		return nil, false
+	}
+	m := f.Material()
+	return &m, true
 }
 
 // plain is a name in small letters with single spaces.

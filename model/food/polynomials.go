@@ -49,8 +49,9 @@ func integral(p [3]float64, t float64) float64 { return t * (p[0] + t*(p[1]/2+t*
 
 // mix is a food as mass fractions of its components, which add up to 1, and its share of air by volume.
 type mix struct {
-	x   [6]float64
-	air float64
+	x      [6]float64
+	air    float64
+	joined bool // the air is in pores that join
 }
 
 // specificVolume is the volume of the components without air, m³/kg.
@@ -82,8 +83,14 @@ func (m *mix) properties(t float64) model.Properties {
 // conductivity in W/(m·K): that of the solid or liquid, then air.
 func (m *mix) conductivity(t float64) float64 { return m.withAir(m.withoutAir(t)) }
 
-// withAir is the conductivity with air in closed pores by the rule of Maxwell and Eucken, the food of k W/(m·K) continuous.
-func (m *mix) withAir(k float64) float64 { return maxwell(phase{k, 1 - m.air}, phase{airK, m.air}) }
+// withAir is the conductivity with air, the food between the pores having k W/(m·K): closed pores by the rule of Maxwell and Eucken with
+// the food continuous, pores that join by that of an effective medium.
+func (m *mix) withAir(k float64) float64 {
+	if m.joined {
+		return medium(phase{k, 1 - m.air}, phase{airK, m.air})
+	}
+	return maxwell(phase{k, 1 - m.air}, phase{airK, m.air})
+}
 
 // withoutAir is the conductivity of what is no air, W/(m·K): water as one phase and the other components, mixed in parallel, as the
 // other, joined by the rule of Levy.
@@ -121,4 +128,11 @@ func levy(a, b phase) float64 {
 // maxwell is the rule of Maxwell and Eucken: phase d spread as separate inclusions in the continuous phase c, W/(m·K).
 func maxwell(c, d phase) float64 {
 	return c.k * (2*c.k + d.k - 2*d.share*(c.k-d.k)) / (2*c.k + d.k + d.share*(c.k-d.k))
+}
+
+// medium is the conductivity of two phases that both reach through the food, the root above 0 of
+// a.share (a.k − k)/(a.k + 2k) + b.share (b.k − k)/(b.k + 2k) = 0, W/(m·K): Landauer, J. Applied Physics 23 (1952), from memory.
+func medium(a, b phase) float64 {
+	p := (3*a.share-1)*a.k + (3*b.share-1)*b.k
+	return (p + math.Sqrt(p*p+8*a.k*b.k)) / 4
 }

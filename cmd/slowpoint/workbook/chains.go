@@ -86,16 +86,26 @@ func (r *reader) chain(p *product, pr *process) {
 // before are the readings of the product's own row, of the height above the sea, and of its food.
 func (p *product) before(height []echoes) [][]echoes {
 	out := [][]echoes{p.line.readings, height}
-	if p.food != nil && len(p.food.readings) > 0 {
-		out = append(out, p.food.readings)
+	for _, y := range p.layers {
+		out = append(out, y.line.readings)
+	}
+	for _, f := range p.foods() {
+		if len(f.readings) > 0 {
+			out = append(out, f.readings)
+		}
 	}
 	return out
 }
 
 // ask tells what the model cannot calculate, as far as the product was understood.
 func (r *reader) ask(p *product, pr *process) {
-	if p.Shape == nil || len(p.Steps) == 0 || p.Shape != model.LayeredSlab && p.Food == nil {
+	if p.Shape == nil || len(p.Steps) == 0 || p.Shape != model.LayeredSlab && p.Food == nil || p.Shape == model.LayeredSlab && len(p.Layers) == 0 {
 		return
+	}
+	for i := range p.Layers {
+		if p.Layers[i].Food == nil {
+			return
+		}
 	}
 	for i := range p.Steps {
 		s := &p.Steps[i]
@@ -140,9 +150,12 @@ func (r *reader) ask(p *product, pr *process) {
 // lines are the rows that a product is made of: its own, those of its food, steps and faces.
 func (p *product) lines(pr *process) []*Line {
 	out := []*Line{p.line}
-	if p.food != nil {
-		for _, f := range p.food.lines {
-			out = append(out, f.Line)
+	for _, y := range p.layers {
+		out = append(out, y.line)
+	}
+	for _, f := range p.foods() {
+		for _, l := range f.lines {
+			out = append(out, l.Line)
 		}
 	}
 	for _, s := range pr.steps {

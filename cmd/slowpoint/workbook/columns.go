@@ -62,9 +62,11 @@ const (
 type span struct{ least, most float64 }
 
 // The spans are common practice, no source: wide enough for any food and kitchen, narrow enough to catch a number typed in the unit
-// of another heading.
+// of another heading. What is possible of properties reaches from foamed plastic to copper, which trays and packs may be layers of.
 var (
 	usualSize, possibleSize         = &span{0.002, 1}, &span{1e-5, 10}              // m
+	usualLayer                      = &span{0.0001, 1}                              // m
+	usualContact, possibleContact   = &span{0, 1}, &span{0, 10}                     // m²·K/W
 	usualStart, possibleStart       = &span{-30, 110}, &span{-80, 125}              // °C
 	usualMedium, possibleMedium     = &span{-60, 280}, &span{-273.15, 600}          // °C
 	usualFreezing, possibleFreezing = &span{-6, 0}, &span{-60, 0.5}                 // °C
@@ -72,14 +74,15 @@ var (
 	usualFilm, possibleFilm         = &span{0, 5000}, &span{0, 1e6}                 // W/(m²·K)
 	usualSpeed, possibleSpeed       = &span{0, 15}, &span{0, 100}                   // m/s
 	usualDuration, possibleDuration = &span{0, 60 * 86400}, &span{0.6, 400 * 86400} // s
-	usualConduct, possibleConduct   = &span{0.1, 0.9}, &span{0.02, 3}               // W/(m·K)
-	usualDensity, possibleDensity   = &span{300, 1500}, &span{50, 3000}             // kg/m³
-	usualSpecific, possibleSpecific = &span{1500, 4300}, &span{500, 5000}           // J/(kg·K)
+	usualConduct, possibleConduct   = &span{0.1, 0.9}, &span{0.02, 430}             // W/(m·K)
+	usualDensity, possibleDensity   = &span{300, 1500}, &span{20, 9000}             // kg/m³
+	usualSpecific, possibleSpecific = &span{1500, 4300}, &span{350, 5000}           // J/(kg·K)
 	usualZ, possibleZ               = &span{3, 40}, &span{1, 100}                   // K
 )
 
 const (
 	slipSize    = "is it cm or inches typed in a mm column, or the other way round?"
+	slipContact = "is it a thickness in mm? A millimetre of air is about 0.04 m²K/W"
 	slipDegrees = "is it °F typed in a °C column?"
 	slipFreezer = "is it the temperature of a freezer, or °F typed in a °C column?"
 	slipFilm    = "is it in another unit than the heading says, such as kW/m²·K?"
@@ -225,12 +228,12 @@ var Sheets = []*Sheet{
 		{Heading: "Start temperature", Quantity: &unit.Temperature, Unit: "°C", Usual: usualStart, Possible: possibleStart, Slip: slipDegrees, Needed: true, Help: "of the whole product when its first step begins"},
 		{Heading: "Note", Help: "printed on the report"},
 	}},
-	{Name: "Layers", Help: "The layers of a layered slab, from the top", Refused: "a layered slab cannot be calculated yet", Columns: []*Column{
-		{Heading: "Product", Needed: true, Help: "a product of the sheet Products"},
-		{Heading: "Layer", Quantity: &unit.Number, Needed: true, Least: Positive, Help: "1 = top"},
-		{Heading: "Food", Needed: true, Help: "a food of the sheet Foods or a built-in one"},
-		{Heading: "Thickness", Quantity: &unit.Length, Unit: "mm", Usual: usualSize, Possible: possibleSize, Slip: slipSize, Needed: true, Least: Positive, Help: "of this layer"},
-		{Heading: "Contact resistance below", Quantity: &unit.Resistance, Unit: "m²K/W", Least: NotNegative, Help: "between this layer and the one below; 0 for perfect contact"},
+	{Name: "Layers", Help: "The layers of a layered slab, from the top", Columns: []*Column{
+		{Heading: "Product", Needed: true, Help: "a product of the sheet Products whose shape is layered slab"},
+		{Heading: "Layer", Quantity: &unit.Number, Needed: true, Least: Positive, Help: "1 = top, then 2, 3 … downwards without a gap"},
+		{Heading: "Food", Needed: true, Help: "a food of the sheet Foods or a built-in one; a tray, tin or pack as a layer goes into Foods too, with measured properties"},
+		{Heading: "Thickness", Quantity: &unit.Length, Unit: "mm", Usual: usualLayer, Possible: possibleSize, Slip: slipSize, Needed: true, Least: Positive, Help: "of this layer"},
+		{Heading: "Contact resistance below", Quantity: &unit.Resistance, Unit: "m²K/W", Usual: usualContact, Possible: possibleContact, Slip: slipContact, Least: NotNegative, Help: "between this layer and the one below, about 0.04 m²K/W a millimetre of air; 0 or blank for perfect contact, which is the fast side; blank in the lowest layer"},
 	}},
 	{Name: "Foods", Help: "The plan's own foods: a composition, or measured properties", Columns: []*Column{
 		{Heading: "Food", Needed: true, Help: "a name; it wins over a built-in food of that name"},

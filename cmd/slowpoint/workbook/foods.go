@@ -101,22 +101,39 @@ func (f *food) make() {
 	if first.source == "" || !first.Sound() {
 		return
 	}
-	if first.composed {
+	switch {
+	case first.composed:
 		f.compose()
-	} else {
+	case !f.weighed():
 		f.measured()
 	}
 	if m := f.material; m != nil {
-		m.At, m.FreezingC, m.WaterActivity, m.Flow = first.Ref(), f.common(func(l *foodLine) *float64 { return l.freezing }), f.common(func(l *foodLine) *float64 { return l.aw }), model.FlowsNo
+		m.At, m.WaterActivity = first.Ref(), f.common(func(l *foodLine) *float64 { return l.aw })
+		if t := f.common(func(l *foodLine) *float64 { return l.freezing }); t != nil {
+			m.FreezingC = t
+		}
 		for _, l := range f.lines {
 			if l.flow != nil {
 				m.Flow = l.flow
 			}
 		}
-		if !first.Filled("Flows") {
+		if m.Flow == nil {
+			m.Flow = model.FlowsNo
 			first.note("Flows", "", model.FlowsNo.Name, "blank: solid or set is taken")
 		}
 	}
+}
+
+// weighed makes the food of the built-in one of its name, with the density that was measured; false if its row says anything else.
+func (f *food) weighed() bool {
+	l := f.lines[0]
+	builtIn, ok := foods.Find(f.name)
+	if !ok || len(f.lines) > 1 || l.measure || l.rho == nil || l.at != nil || l.air != nil {
+		return false
+	}
+	l.note("Water", "", builtIn.Composition.String(), "blank: the composition of the built-in food of this name is taken")
+	f.made(builtIn.Weighed(foods.Weighing{DensityKgM3: *l.rho, FreezingC: l.freezing, Source: l.source}))
+	return true
 }
 
 // agrees checks that a row says one thing, and the same as the rows before it.
@@ -168,8 +185,13 @@ func (f *food) compose() {
 			l.note(partNames[i], "", "0 %", "blank: none is taken")
 		}
 	}
-	m, err := foods.Compose(f.name, l.source, foods.Composition{WaterPc: v[0], ProteinPc: v[1], FatPc: v[2], CarbohydratePc: v[3], FibrePc: v[4], AshPc: v[5],
-		AirByVolumePc: l.air, DensityKgM3: l.rho, FreezingC: l.freezing})
+	f.made(foods.Compose(f.name, l.source, foods.Composition{WaterPc: v[0], ProteinPc: v[1], FatPc: v[2], CarbohydratePc: v[3], FibrePc: v[4], AshPc: v[5],
+		AirByVolumePc: l.air, DensityKgM3: l.rho, FreezingC: l.freezing}))
+}
+
+// made takes a material over, or tells at its row why there is none.
+func (f *food) made(m model.Material, err error) {
+	l := f.lines[0]
 	var faults foods.Faults
 	switch {
 	case errors.As(err, &faults):
@@ -251,12 +273,18 @@ func (r *reader) foodNamed(name string) *food {
 	return nil
 }
 
+// foodAiry goes on after foodUnknown.
+const foodAiry = " that can do without a measured density: it holds much air, so add a row of this name to the sheet Foods with its Density and a Source, and its composition is taken from the built-in table"
+
 // foodsLike offers names for one that is neither in the plan nor built in.
 func (r *reader) foodsLike(name string) string {
 	if r.offers > mostOffers {
 		return ""
 	}
 	r.offers += 1000 + len(r.foods)
+	if f, ok := foods.Find(name); ok && f.Airy() {
+		return foodAiry
+	}
 	var own []string
 	for _, f := range r.foods {
 		own = append(own, f.name)

@@ -128,6 +128,12 @@ var (
 	faceTwice      = saying{"is there twice for this step; the first is in row {1}", "keep one of the rows"}
 	processRefused = saying{"cannot be calculated: {1}", "{2}"}
 	otherProcess   = saying{"is a product of the process {1}, not of this one", "correct the product or the process"}
+	layerNotWhole  = saying{"is not the number of a layer", "number the layers 1, 2, 3 … from the top"}
+	layerTwice     = saying{"is there twice for this product; the first is in row {1}", "number the layers 1, 2, 3 … from the top, each once"}
+	layerGap       = saying{"is given, but no row is layer {1}", "number the layers 1, 2, 3 … from the top, without a gap"}
+	layerLast      = saying{"is given for the lowest layer, below which there is no other", "clear the cell; what lies below the product goes into Wrap resistance of the sheets Steps or Faces"}
+	layersFew      = saying{"needs two layers or more in the sheet Layers, and {1} has {2}", "add a row for each layer, or choose another shape"}
+	layersMany     = saying{"is one of more than {1} layers", "join layers of one food"}
 	layersOfOther  = saying{"has layers, but its shape is {1}", "choose the shape layered slab, or take its layers out"}
 	pointCentre    = saying{"is the name of the built-in point at 0, 0, 0", "give the point another name, or type 0 for Up, Across and Along"}
 	pointTwice     = saying{"is there twice for this product; the first is in row {1}", "give each point of a product a name of its own"}

@@ -13,6 +13,7 @@ type product struct {
 	Product
 	line    *Line
 	food    *food
+	layers  []*layer           // of a layered slab, from the top
 	own     map[string]*step   // rows of Steps that name it, by step
 	faces   map[string][]*face // rows of Faces that name it, by step
 	points  map[string]int     // row of each point

@@ -219,6 +219,7 @@ func (r *reader) read() {
 			p.suffer(r.unread[name])
 		}
 	}
+	r.readLayers()
 	r.readSteps()
 	r.readFaces()
 	r.readPoints()
@@ -434,24 +435,6 @@ func (r *reader) notYet() {
 		for i, l := range t.lines {
 			var concerned []*product
 			switch s.Name {
-			case "Layers":
-				name := l.Words("Product")
-				p := r.byName[Key(name)]
-				if p == nil {
-					if name != "" && !r.blind() {
-						l.Fault("Product", name, productUnknown, r.offer(name, r.productNames))
-					}
-					continue
-				}
-				if p.Shape != nil && p.Shape != model.LayeredSlab {
-					l.Fault("Product", name, layersOfOther, p.Shape.Name)
-				}
-				l.Words("Food")
-				l.Number("Layer")
-				l.Number("Thickness")
-				l.Number("Contact resistance below")
-				p.suffer(l.because)
-				continue // the shape itself is refused
 			case "Spread":
 				concerned = r.products
 				if i < 200 {

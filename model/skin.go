@@ -1,0 +1,335 @@
+package model
+
+import "math"
+
+// skin is how a face, or the whole surface, exchanges heat during one step. It is for one goroutine.
+//
+// Outermost stands what follows the temperature of the outer surface: convection by a correlation or a typed film, radiation, evaporation
+// and condensation. Resistances (wrap, lid gap, the film inside a stirred vessel) lie in series beneath: the outer surface then takes the
+// temperature at which as much heat arrives as passes them.
+type skin struct {
+	held      bool // the surface is kept at the medium: no flux is to be asked for
+	insulated bool
+	linear    bool    // the flux is totalW × (medium - surface): neither a correlation nor radiation nor moisture
+	totalW    float64 // W/(m²·K), where linear
+	seriesR   float64 // m²·K/W between the outer surface and the food, where not linear
+
+	course, humidity cursor  // °C and %, from the start of the step
+	moist            bool    // the humidity is stated, or one is taken for a wet surface
+	totalPa          float64 // pressure of the air
+
+	filmW     float64  // typed film, W/(m²·K); 0: by air
+	air       *airFilm // nil where the film is typed or stated
+	steamAir  bool     // steam with air in it
+	radiates  float64  // emissivity; 0: no radiation counted
+	wallsK4   float64  // radiating temperature, K to the fourth
+	wet       bool     // evaporates as well as condenses
+	condenses bool     // vapour condenses below the dew point, wet or dry
+	slowHeats bool     // of two forms of the law of evaporation the one that leaves the food colder; else the hotter
+	activity  float64  // of the water at a wet surface
+
+	law   func(surfaceC, tauS float64) (w, slope float64) // stands for everything (tests)
+	now   around                                          // of a medium that stays as it is
+	table *fluxTable                                      // of a medium that stays as it is; nil otherwise
+	exp   *Exposure
+	film  filmCase
+}
+
+// around is what surrounds a face at one instant.
+type around struct {
+	mediumC  float64
+	ratio    float64 // humidity ratio of the air
+	vapourPa float64
+	dewC     float64 // steam with air only
+	uchidaW  float64 // film of condensing steam with air, W/(m²·K)
+}
+
+// usualEmissivity is taken where a radiating temperature stands without an emissivity: foods lie at 0.9 to 0.95 (from memory).
+const usualEmissivity = 0.9
+
+// stefan is the constant of Stefan and Boltzmann, W/(m²·K⁴) (CODATA).
+const stefan = 5.670374419e-8
+
+// Water activity of a wet surface where the food's is not known: pure water where a colder food is the safe side, and in chilling the low
+// end of moist cooked food (common practice, no source).
+const activityHeats, activityCools = 1, 0.95
+
+// newSkin makes ready what the exposure e does to a food of water activity aw during a step. Of c it takes shape, size and foodC.
+func newSkin(e *Exposure, c *filmCase, aw *float64, st *Step) *skin {
+	s := &skin{exp: e, film: *c, slowHeats: st.Stage != nil && st.Stage.Heats}
+	s.film.altitudeM = st.AltitudeM
+	s.film.mediumC = e.Medium.meanC(st.DurationS)
+	if e.AirMS != nil {
+		s.film.airMS = *e.AirMS
+	}
+	s.course = cursor{x: e.Medium.TimesS, y: e.Medium.C}
+	if e.Surface.law != nil {
+		s.law = e.Surface.law
+		s.tabulate()
+		return s
+	}
+	if e.Surface.NoMedium {
+		s.insulated, s.linear = true, true
+		return s
+	}
+	if !e.reacts() {
+		u := e.filmUsed(nil, &s.film)
+		s.linear, s.totalW, s.held = true, u.TotalW, math.IsInf(u.TotalW, 1)
+		return s
+	}
+	s.totalPa = pressurePa(st.AltitudeM)
+	s.seriesR = e.seriesM2KW(&s.film)
+	s.steamAir = e.steamWithAir()
+	switch {
+	case e.FilmW != nil:
+		s.filmW = *e.FilmW
+	default:
+		s.air = newAirFilm(e.Surface == MovingAir, &s.film)
+	}
+	if e.RadiatingC != nil {
+		s.radiates = usualEmissivity
+		if e.Emissivity != nil {
+			s.radiates = *e.Emissivity
+		}
+		s.wallsK4 = math.Pow(*e.RadiatingC+273.15, 4)
+	}
+	s.wets(e, aw)
+	s.tabulate()
+	return s
+}
+
+// wets makes moisture ready.
+func (s *skin) wets(e *Exposure, aw *float64) {
+	s.wet = e.wet()
+	switch {
+	case e.Medium.RH != nil:
+		s.humidity = cursor{x: e.Medium.TimesS, y: e.Medium.RH}
+	case e.RH != nil:
+		s.humidity = cursor{y: []float64{*e.RH}}
+	case s.wet && s.slowHeats: // dry air: the most evaporation
+		s.humidity = cursor{y: []float64{0}}
+	case s.wet: // the least
+		s.humidity = cursor{y: []float64{100}}
+	}
+	s.moist = s.humidity.y != nil
+	s.condenses = s.moist && !s.steamAir && (s.wet || e.FilmW == nil)
+	s.activity = activityCools
+	if s.slowHeats {
+		s.activity = activityHeats
+	}
+	if aw != nil {
+		s.activity = *aw
+	}
+}
+
+// wet tells whether the surface is said to be wet.
+func (e *Exposure) wet() bool { return e.Wet != nil && *e.Wet }
+
+// inAir tells whether the surroundings are air, whose film, radiation and moisture can be worked out.
+func (e *Exposure) inAir() bool { return e.Surface == StillAir || e.Surface == MovingAir }
+
+// steamWithAir tells whether steam is said not to be all vapour.
+func (e *Exposure) steamWithAir() bool {
+	if e.Surface != Steam || e.FilmW != nil {
+		return false
+	}
+	for _, rh := range e.Medium.RH {
+		if rh < 100 {
+			return true
+		}
+	}
+	return e.Medium.RH == nil && e.RH != nil && *e.RH < 100
+}
+
+// reacts tells whether the exchange of heat is no constant coefficient: its film follows the surface, or it radiates, or moisture counts.
+func (e *Exposure) reacts() bool {
+	return e.Surface.law != nil || e.steamWithAir() || e.inAir() && (e.FilmW == nil || e.RadiatingC != nil || e.wet())
+}
+
+// seriesM2KW is what lies between the outer surface and the food, m²·K/W.
+func (e *Exposure) seriesM2KW(c *filmCase) float64 {
+	r := 0.0
+	if e.WrapM2KW != nil {
+		r = *e.WrapM2KW
+	}
+	if e.innerFilm(c) {
+		r += 1 / innerW
+	}
+	return r
+}
+
+// innerW is the film between a vessel's wall and a liquid in it that is stirred, W/(m²·K): the low end of 50 to 100 for liquids that only
+// move by themselves (Çengel, Heat Transfer, typical values); stirring makes it higher.
+const innerW = 50
+
+// innerFilm tells whether the film inside a vessel counts: not where the user typed the film, which stands for everything, nor where
+// the liquid itself lies open and wet.
+func (e *Exposure) innerFilm(c *filmCase) bool {
+	return c.shape == Stirred && e.FilmW == nil && !e.Surface.NoMedium && e.Surface.law == nil && !e.wet()
+}
+
+// around gives the surroundings tau s after the start of the step.
+func (s *skin) around(tau float64) around {
+	var a around
+	a.mediumC = s.mediumC(tau)
+	if !s.moist {
+		return a
+	}
+	a.vapourPa = vapourPa(a.mediumC, at(&s.humidity, tau), s.totalPa)
+	a.ratio = humidityRatio(a.vapourPa, s.totalPa)
+	if s.steamAir {
+		a.dewC = dewC(a.vapourPa)
+		a.uchidaW = min(uchidaW(a.ratio), steamW)
+	}
+	return a
+}
+
+// mediumC is the temperature of the surroundings tau s after the start of the step; meaningless where insulated.
+func (s *skin) mediumC(tau float64) float64 { return at(&s.course, tau) }
+
+// at reads a course, or the one value that it has; NaN if it has none.
+func at(c *cursor, tau float64) float64 {
+	switch len(c.y) {
+	case 0:
+		return math.NaN()
+	case 1:
+		return c.y[0]
+	}
+	return c.to(tau)
+}
+
+// uchidaW is the film of steam that condenses on a cold wall out of air, W/(m²·K), by the mass of steam to that of air
+// (Uchida, Oyama & Togo 1965, 3rd UN Conference on Peaceful Uses of Atomic Energy 13:93-102; from memory), air left still.
+func uchidaW(ratio float64) float64 { return 379 * math.Pow(ratio, 0.707) }
+
+// convectionW is the film on the outer surface, W/(m²·K).
+func (s *skin) convectionW(outerC float64, a *around) float64 {
+	if s.air == nil {
+		return s.filmW
+	}
+	return s.air.at(outerC, a.mediumC)
+}
+
+// outer is the heat that arrives at the outer surface, W/m².
+func (s *skin) outer(outerC float64, a *around) float64 {
+	h := s.convectionW(outerC, a)
+	w := h * (a.mediumC - outerC)
+	if s.steamAir { // it condenses while the surface is colder than the dew point, and beyond that it warms as still air does
+		return max(a.uchidaW*(a.dewC-outerC), w)
+	}
+	if s.radiates > 0 {
+		w += s.radiationW(outerC)
+	}
+	if s.condenses {
+		w -= h / (dryAirCp * lewisFactor) * s.drive(outerC, a) * latentJkg(outerC)
+	}
+	return w
+}
+
+// radiationW is the net heat by radiation, W/m².
+func (s *skin) radiationW(outerC float64) float64 {
+	k := outerC + 273.15
+	return s.radiates * stefan * (s.wallsK4 - k*k*k*k)
+}
+
+// drive is what drives vapour off the surface, kg a kg of dry air: above 0 it evaporates, below it condenses. The mass is
+// h/(cp Le^(2/3)) times it (Lewis' relation; Chilton & Colburn 1934). It is the difference of the humidity ratios, or Stefan's
+// ln((1 + ratio at the surface)/(1 + ratio of the air)), which is smaller where there is much vapour: whichever leaves the food colder
+// where it is to be heated, and whichever leaves it hotter where it is to be cooled.
+func (s *skin) drive(outerC float64, a *around) float64 {
+	activity := 1.0
+	if s.wet {
+		activity = s.activity
+	}
+	ws := humidityRatio(activity*satPa(outerC), s.totalPa)
+	d := ws - a.ratio
+	if !s.wet && d >= 0 {
+		return 0
+	}
+	if l := math.Log1p(d / (1 + a.ratio)); (l > d) == s.slowHeats {
+		d = l
+	}
+	return d
+}
+
+// direct is the heat that flows into the food at a temperature of its surface, W/m².
+func (s *skin) direct(surfaceC float64, a *around) float64 {
+	if s.seriesR == 0 {
+		return s.outer(surfaceC, a)
+	}
+	_, w := s.through(surfaceC, a)
+	return w
+}
+
+// through finds the temperature of the outer surface, °C, and the heat, W/m², that passes the resistances beneath it.
+func (s *skin) through(surfaceC float64, a *around) (outerC, w float64) {
+	short := func(t float64) float64 { return s.outer(t, a) - (t-surfaceC)/s.seriesR } // falls with t
+	lo, hi := surfaceC, surfaceC
+	at := short(surfaceC)
+	for step := 8.0; ; step *= 2 { // brackets the root
+		if at > 0 {
+			lo, hi = hi, hi+step
+			if short(hi) <= 0 {
+				break
+			}
+		} else {
+			lo, hi = lo-step, lo
+			if short(lo) > 0 {
+				break
+			}
+		}
+		if step > 4096 {
+			break
+		}
+	}
+	t := (lo + hi) / 2
+	for range 100 {
+		f := short(t)
+		if f > 0 {
+			lo = t
+		} else {
+			hi = t
+		}
+		const d = 1e-4
+		next := t - f*2*d/(short(t+d)-short(t-d))
+		if !(next > lo && next < hi) {
+			next = (lo + hi) / 2
+		}
+		if math.Abs(next-t) < 1e-12*(1+math.Abs(t)) || hi-lo < 1e-12 {
+			t = next
+			break
+		}
+		t = next
+	}
+	return t, (t - surfaceC) / s.seriesR
+}
+
+// flux gives the heat that flows into the food, W/m², and its slope by the surface temperature, W/(m²·K), tau s after the start of the
+// step. Where the medium stays as it is both come from a table of cubics.
+func (s *skin) flux(surfaceC, tau float64) (w, slope float64) {
+	if s.table != nil {
+		return s.table.at(surfaceC)
+	}
+	return s.exact(surfaceC, tau)
+}
+
+// exact is flux without a table.
+func (s *skin) exact(surfaceC, tau float64) (w, slope float64) {
+	switch {
+	case s.law != nil:
+		return s.law(surfaceC, tau)
+	case s.insulated:
+		return 0, 0
+	case s.linear:
+		return s.totalW * (s.mediumC(tau) - surfaceC), -s.totalW
+	case s.table != nil:
+		return s.sloped(surfaceC, &s.now, 1e-3)
+	}
+	a := s.around(tau)
+	return s.sloped(surfaceC, &a, 1e-3)
+}
+
+// sloped takes the slope from two temperatures d K to each side.
+func (s *skin) sloped(surfaceC float64, a *around, d float64) (w, slope float64) {
+	return s.direct(surfaceC, a), (s.direct(surfaceC+d, a) - s.direct(surfaceC-d, a)) / (2 * d)
+}
