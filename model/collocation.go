@@ -149,3 +149,9 @@ func (c *collocation) weightsAt(x float64, out []float64) {
 	clear(out)
 	addColumns(out, c.b, n, phi[:n])
 }
+
+// coefficients gives those of the polynomials from the values at the nodes.
+func (c *collocation) coefficients(values, out []float64) {
+	clear(out[:c.n])
+	addRows(out[:c.n], c.b, c.n, values)
+}

@@ -49,40 +49,63 @@ func (s *solver) marches() bool {
 
 // effort is how finely a march is made.
 type effort struct {
-	nodes float64 // factor on the number of nodes
+	more  float64 // factor on the number of nodes
 	tolK  float64 // error of a step in time, K
+	rough bool    // the second march, that the error is estimated with
 }
 
-// rougher is the effort of the second march, that the error is estimated with: half the nodes and six times the tolerance make about four
-// times the error, as both are of second order (a step's error of third order, so that their sum goes with the tolerance to 2/3).
-func (e effort) rougher() effort { return effort{e.nodes / 2, e.tolK * 6} }
+// rougher is the effort of the second march. A step's error in time is of third order, so that their sum goes with the tolerance to 2/3.
+// Control volumes, with half the nodes, and times that go with them make about four times the error; polynomials, two fewer on each half
+// axis, and times that go with them about six times.
+func (s *solver) rougher(e effort) effort {
+	if s.polynomial() {
+		return effort{e.more, e.tolK * 15, true}
+	}
+	return effort{e.more, e.tolK * 6, true}
+}
 
-// march solves the product by marching, with more effort until the estimate of the error meets its goal.
+// How the difference of the two marches goes over into an error: that of a march with four or six times the error lies three or five
+// errors off, less some for doubt.
+const (
+	volumesWorse     = 2.3
+	polynomialsWorse = 3.5
+)
+
+// polynomial tells whether the march has polynomials in space: smooth fields of more than one direction.
+func (s *solver) polynomial() bool { return s.used > 1 && !s.mayFreeze() }
+
+// marchGoalK is the error that a march is to keep, K.
+const marchGoalK = 0.019
+
+// march solves the product by marching, with more effort until the estimate of the error meets its goal, or three times.
 func (s *solver) march() (*History, error) {
-	const goal = 0.019
-	e := effort{1, 1e-3}
-	for more := 0; ; more++ {
+	e := effort{more: 1, tolK: 2e-3}
+	worse := float64(volumesWorse)
+	if s.polynomial() {
+		e.tolK, worse = 3e-3, polynomialsWorse
+	}
+	for tries := 0; ; tries++ {
 		h, fine := s.marchOnce(e)
 		if len(s.refused) > 0 {
 			return nil, s.refused
 		}
 		chain := s.chain
-		_, rough := s.marchOnce(e.rougher())
-		s.chain = chain
-		s.main = fine
-		h.ErrorK = max(1e-5, fine.differs(h, rough)/marchedWorse)
-		if h.ErrorK <= goal || more == 3 {
+		_, rough := s.marchOnce(s.rougher(e))
+		s.chain, s.main = chain, fine
+		h.ErrorK = max(1e-5, fine.differs(h, rough)/worse)
+		if h.ErrorK <= marchGoalK || tries == 3 {
 			s.boiling(h)
 			return h, nil
 		}
-		worse := math.Sqrt(h.ErrorK / goal)
-		e.nodes *= min(2, 1.15*worse)
-		e.tolK /= min(6, 1.3*worse*worse)
+		by := h.ErrorK / marchGoalK
+		if s.polynomial() {
+			e.more *= min(1.3, 1+0.1*by)
+		} else {
+			e.more *= min(2, 1.15*math.Sqrt(by))
+		}
+		e.tolK /= min(6, 1.3*by)
 	}
 }
-
-// marchedWorse divides the difference of the two marches: with four times the error the rougher one lies three errors off.
-const marchedWorse = 2.3
 
 // marchOnce runs the whole chain.
 func (s *solver) marchOnce(e effort) (*History, *marched) {
@@ -163,17 +186,17 @@ func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
 		if k, ok := made[e]; ok {
 			return k
 		}
+		own := *e
+		own.Medium = s.raised(st, e, span)
+		k := s.skinOf(&own, face, st)
 		if e == &st.Exposure {
 			face = nil
 		}
-		own := *e
-		own.Medium = s.raised(st, e, span)
-		k := s.skinOf(&own, st)
 		made[e] = k
 		if !e.Surface.NoMedium {
 			cs.group(own.Medium, st.DurationS)
 		}
-		span.Films = append(span.Films, k.used(face))
+		_ = face
 		return k
 	}
 	f.state.surround(skins)
@@ -279,17 +302,33 @@ type mesh interface {
 	at(x coord, nodes []float64) float64
 	// weights of the nodes in the volume mean; they add up to 1.
 	weights() []float64
+	// onto gives a function that fills there with the temperatures at the nodes of another mesh of the same kind, from those at its own.
+	onto(other mesh) func(here, there []float64)
+	// fill gives the temperatures at the nodes of the body, which may be more than those of the march.
+	fill(nodes, out []float64)
+	// slice gives the coefficients of the polynomials along an axis through a place, where the mesh has polynomials.
+	slice(nodes []float64, axis int, x coord, node [3]int, out []float64)
 	// words for the report
 	String() string
 }
 
 func (f *marched) course(x coord, times, out []float64) {
+	if m, ok := f.mesh.(weighted); ok {
+		w := m.placeWeights(x)
+		for i, t := range times {
+			out[i] = f.track.sum(f.track.find(t), w)
+		}
+		return
+	}
 	now := f.now.c
 	for i, t := range times {
 		f.track.all(f.track.find(t), now)
 		out[i] = f.mesh.at(x, now)
 	}
 }
+
+// weighted is a mesh in which the temperature of a place is a sum over the nodes.
+type weighted interface{ placeWeights(x coord) []float64 }
 
 // marchedShot is a marched field at one instant.
 type marchedShot struct {
@@ -302,10 +341,10 @@ func (f *marched) at(t float64) snapshot {
 	return &f.now
 }
 
-func (s *marchedShot) grid(out []float64) { copy(out, s.c) }
+func (s *marchedShot) grid(out []float64) { s.f.mesh.fill(s.c, out) }
 
 func (s *marchedShot) slice(axis int, x coord, node [3]int, out []float64) {
-	panic("model: a marched field has no polynomials")
+	s.f.mesh.slice(s.c, axis, x, node, out)
 }
 
 func (s *marchedShot) mean() float64 {
@@ -326,16 +365,18 @@ func (f *marched) method() string {
 // differs gives the largest difference from a rougher march at its nodes, from settle after each change on.
 func (f *marched) differs(h *History, rough *marched) float64 {
 	worst := 0.0
-	fine := make([]float64, f.track.n)
-	other := make([]float64, rough.track.n)
+	mine, other, there := make([]float64, f.track.n), make([]float64, rough.track.n), make([]float64, f.track.n)
+	end := rough.track.times[len(rough.track.times)-1]
+	onto := rough.mesh.onto(f.mesh)
 	for i := range h.Spans {
 		sp := &h.Spans[i]
-		for tau := h.settle; ; tau *= 1.25 {
+		for tau := h.settle; ; tau *= 1.4 {
 			t := min(sp.StartS+tau, sp.EndS)
-			f.track.all(f.track.find(t), fine)
-			rough.track.all(rough.track.find(min(t, rough.track.times[len(rough.track.times)-1])), other)
-			for j := range fine {
-				worst = max(worst, math.Abs(fine[j]-rough.mesh.at(f.body.node(j), other)))
+			f.track.all(f.track.find(t), mine)
+			rough.track.all(rough.track.find(min(t, end)), other)
+			onto(other, there)
+			for j, c := range mine {
+				worst = max(worst, math.Abs(c-there[j]))
 			}
 			if t == sp.EndS {
 				break
@@ -349,26 +390,121 @@ func (f *marched) differs(h *History, rough *marched) float64 {
 func (s *solver) newMarched(e effort) *marched {
 	laws := s.lawsOf()
 	f := &marched{track: &track{}}
-	if s.used <= 1 {
-		kind, r := s.kinds[0], s.radii[0]
-		if s.used == 0 {
-			kind, r = lumped, s.product.Size.VolumeM3/s.product.Size.AreaM2
-		}
-		g := newLineGrid(s.product, kind, r, int(math.Round(s.lineNodes()*e.nodes)))
-		m := newLineMarch(g, laws)
-		m.lower, m.upper = s.faces[0][0], s.faces[0][1]
-		m.fill(s.product.StartC)
-		f.state, f.mesh = m, newLineMesh(g)
-		nd := &nodes{x: [3][]float64{make([]float64, len(g.x)), {0}, {0}}}
-		for i, x := range g.x {
-			nd.x[0][i] = x / g.r
-		}
-		f.body = newBody(s.kinds, s.radii, nd)
+	switch {
+	case s.product.Shape == Spheroid:
+		s.layRound(f, laws[0], e)
+	case s.used > 1:
+		s.laySpace(f, laws[0], e)
+	default:
+		s.layLine(f, laws, e)
 	}
-	f.body.pieces = true
-	f.track.n = f.body.nodes.count()
+	f.track.n = len(f.mesh.weights())
 	f.now = marchedShot{f, make([]float64, f.track.n)}
 	return f
+}
+
+// layLine lays out a body of one axis, a layered slab, or a stirred food.
+func (s *solver) layLine(f *marched, laws []*law, e effort) {
+	kind, r := s.kinds[0], s.radii[0]
+	if s.used == 0 {
+		kind, r = lumped, s.product.Size.VolumeM3/s.product.Size.AreaM2
+	}
+	g := newLineGrid(s.product, kind, r, e.volumes(lineNodes))
+	m := newLineMarch(g, laws)
+	m.lower, m.upper = s.faces[0][0], s.faces[0][1]
+	m.fill(s.product.StartC)
+	f.state, f.mesh = m, newLineMesh(g)
+	nd := &nodes{x: [3][]float64{make([]float64, len(g.x)), {0}, {0}}}
+	for i, x := range g.x {
+		nd.x[0][i] = x / g.r
+	}
+	f.body = newBody(s.kinds, s.radii, nd)
+	f.body.pieces = true
+}
+
+// laySpace lays out a body of two or three axes.
+func (s *solver) laySpace(f *marched, l *law, e effort) {
+	var axes [3]*spaceAxis
+	nd := &nodes{x: [3][]float64{{0}, {0}, {0}}, phi: [3][]float64{{1}, {1}, {1}}}
+	front := s.mayFreeze()
+	for a := range axes {
+		switch {
+		case a >= s.used:
+			axes[a] = &spaceAxis{kind: lumped, n: 1, x: []float64{0}, w: []float64{1}, k: []float64{0}}
+			continue
+		case front:
+			axes[a] = cutAxis(s.kinds[a], s.radii[a], e.volumes(cutNodes), s.faces[a])
+			nd.x[a] = axes[a].x
+			continue
+		}
+		axes[a] = smoothAxis(s.kinds[a], s.radii[a], s.smoothNodes(a, e), s.faces[a])
+		axes[a].bodyNodes(nd, a)
+	}
+	f.state, f.mesh = newSpaceMarch(axes, l, s.product.StartC), newSpaceMesh(axes)
+	f.body = newBody(s.kinds, s.radii, nd)
+	f.body.pieces = front
+}
+
+// marchSettleS is the longest time after a change of surroundings from which the error is held where polynomials in two or three
+// directions are marched, s: the first minutes of a thick food would need many times the polynomials of all that follows.
+const marchSettleS = 300
+
+// marchSettle is that time.
+func (s *solver) marchSettle(alpha float64) float64 {
+	settle := float64(marchSettleS)
+	for a := 0; a < s.used; a++ {
+		settle = min(settle, settleFo*s.radii[a]*s.radii[a]/alpha)
+	}
+	return settle
+}
+
+// smoothNodes is how many polynomials an axis gets.
+func (s *solver) smoothNodes(a int, e effort) int {
+	n := int(math.Round(float64(s.degrees(a, 0)) * e.more))
+	if e.rough {
+		n += s.fewer(a, 0) - s.degrees(a, 0)
+	}
+	return min(n, maxDegrees)
+}
+
+// volumes is how many control volumes an axis gets of n.
+func (e effort) volumes(n int) int {
+	if e.rough {
+		return int(math.Round(float64(n) * e.more / 2))
+	}
+	return int(math.Round(float64(n) * e.more))
+}
+
+// bodyNodes gives the nodes that a body looks at: those of the axis, and a centre of symmetry.
+func (a *spaceAxis) bodyNodes(nd *nodes, axis int) {
+	x := a.x
+	if a.kind != planeFull {
+		x = append([]float64{0}, x...)
+	}
+	nd.x[axis], nd.phi[axis] = x, make([]float64, len(x)*a.n)
+	for g, at := range x {
+		a.poly.values(at, nd.phi[axis][g*a.n:(g+1)*a.n], nil)
+	}
+}
+
+// mayFreeze tells whether any place of a food that freezes may pass its freezing point.
+func (s *solver) mayFreeze() bool {
+	for _, f := range s.product.Foods() {
+		if !f.freezes() {
+			continue
+		}
+		if s.product.StartC < *f.FreezingC {
+			return true
+		}
+		for i := range s.steps {
+			for _, e := range exposures(s.product.Shape, &s.steps[i]) {
+				if low, _ := s.skinOf(e, nil, &s.steps[i]).mediumRange(); low < *f.FreezingC {
+					return true
+				}
+			}
+		}
+	}
+	return false
 }
 
 // lawsOf makes the laws of the foods, by layer; they are made once for all marches of the product.
@@ -391,13 +527,23 @@ func (s *solver) lawsOf() []*law {
 	return s.laws
 }
 
-// lineNodes is how many volumes a half axis gets at first.
-func (s *solver) lineNodes() float64 { return 48 }
+// How many volumes a half axis gets at first: of one axis, and of more where a front moves through them.
+const (
+	lineNodes = 48
+	cutNodes  = 14
+)
 
-// skinOf makes the skin of a face.
-func (s *solver) skinOf(e *Exposure, st *Step) *skin {
-	fc := filmCase{shape: s.product.Shape, size: s.product.Size, foodC: 20, mediumC: 20, altitudeM: st.AltitudeM}
-	return &skin{held: e.Surface == Held, insulated: e.Surface.NoMedium, e: e, f: e.filmUsed(nil, &fc), law: e.Surface.law}
+// skinOf makes the skin of a face; of layers the outermost tells the water at a wet surface.
+func (s *solver) skinOf(e *Exposure, face *Face, st *Step) *skin {
+	var food *Material
+	if p := s.product; p.Food != nil {
+		food = p.Food
+	} else if face == Underside {
+		food = p.Layers[len(p.Layers)-1].Food
+	} else {
+		food = p.Layers[0].Food
+	}
+	return newSkin(e, &filmCase{shape: s.product.Shape, size: s.product.Size, foodC: s.product.StartC}, food.WaterActivity, st)
 }
 
 // raisedTo is the freezing point that chill media are raised to: the highest of the foods that are not calculated through freezing; nil if

@@ -371,12 +371,155 @@ func (m *spaceMesh) at(x coord, c []float64) float64 {
 	if m.axes[0].poly == nil {
 		return m.pieces(x, c)
 	}
-	w := m.placeWeights(x)
-	sum := 0.0
-	for i, v := range w {
-		sum += v * c[i]
+	n1, n2 := m.axes[1].n, m.axes[2].n
+	var v [3][maxDegrees]float64
+	for a, ax := range m.axes {
+		ax.valueAt(x[a], v[a][:ax.n])
+	}
+	sum, i := 0.0, 0
+	for _, p := range v[0][:m.axes[0].n] {
+		for _, q := range v[1][:n1] {
+			line := 0.0
+			for k, r := range v[2][:n2] {
+				line += r * c[i+k]
+			}
+			sum += p * q * line
+			i += n2
+		}
 	}
 	return sum
+}
+
+// onto goes along the last axis, then the middle one, then the first.
+func (m *spaceMesh) onto(other mesh) func(here, there []float64) {
+	to := other.(interface{ space() *spaceMesh }).space()
+	var along [3]func(here, there []float64)
+	for a := range along {
+		along[a] = m.axes[a].onto(to.axes[a])
+	}
+	n := [3]int{m.axes[0].n, m.axes[1].n, m.axes[2].n}
+	k := [3]int{to.axes[0].n, to.axes[1].n, to.axes[2].n}
+	p, q := make([]float64, n[0]*n[1]*k[2]), make([]float64, n[0]*k[1]*k[2])
+	in, out := make([]float64, max(n[0], n[1])), make([]float64, max(k[0], k[1]))
+	// lines goes along the middle index of from (outer × n × inner) into that of into (outer × k × inner).
+	lines := func(a, outer, inner int, from, into []float64) {
+		for o := 0; o < outer; o++ {
+			for i := 0; i < inner; i++ {
+				for j := 0; j < n[a]; j++ {
+					in[j] = from[(o*n[a]+j)*inner+i]
+				}
+				along[a](in[:n[a]], out[:k[a]])
+				for j, c := range out[:k[a]] {
+					into[(o*k[a]+j)*inner+i] = c
+				}
+			}
+		}
+	}
+	return func(here, there []float64) {
+		for i := 0; i < n[0]*n[1]; i++ {
+			along[2](here[i*n[2]:(i+1)*n[2]], p[i*k[2]:(i+1)*k[2]])
+		}
+		lines(1, n[0], k[2], p, q)
+		lines(0, 1, k[1]*k[2], q, there)
+	}
+}
+
+func (m *spaceMesh) space() *spaceMesh { return m }
+
+// onto gives a function that takes values at the nodes of an axis to those of another.
+func (a *spaceAxis) onto(other *spaceAxis) func(here, there []float64) {
+	if a.n == 1 {
+		return func(here, there []float64) { copy(there, here) }
+	}
+	if a.poly == nil {
+		return func(here, there []float64) {
+			for j, x := range other.x {
+				there[j] = a.line.at(coord{x}, here)
+			}
+		}
+	}
+	w := make([]float64, other.n*a.n)
+	for j, x := range other.x {
+		a.valueAt(x, w[j*a.n:(j+1)*a.n])
+	}
+	return func(here, there []float64) {
+		clear(there)
+		addRows(there, w, a.n, here)
+	}
+}
+
+// fill gives the temperatures at the nodes of the body: those of the march, and on axes of polynomials the centre of symmetry.
+func (m *spaceMesh) fill(c, out []float64) {
+	if m.axes[0].poly == nil {
+		copy(out, c)
+		return
+	}
+	n := [3]int{m.axes[0].n, m.axes[1].n, m.axes[2].n}
+	var more [3]int // a node of the body before those of the march
+	var zero [3][maxDegrees]float64
+	for a, ax := range m.axes {
+		if ax.n > 1 && ax.kind != planeFull {
+			more[a] = 1
+			ax.valueAt(0, zero[a][:ax.n])
+		}
+	}
+	w1, w2 := n[1]+more[1], n[2]+more[2]
+	for i := 0; i < n[0]; i++ {
+		plane := out[(i+more[0])*w1*w2:][:w1*w2]
+		for j := 0; j < n[1]; j++ {
+			row := c[(i*n[1]+j)*n[2]:][:n[2]]
+			to := plane[(j+more[1])*w2:][:w2]
+			copy(to[more[2]:], row)
+			if more[2] > 0 {
+				sum := 0.0
+				for k, z := range zero[2][:n[2]] {
+					sum += z * row[k]
+				}
+				to[0] = sum
+			}
+		}
+		if more[1] > 0 {
+			clear(plane[:w2])
+			addColumns(plane[:w2], plane[w2:], w2, zero[1][:n[1]])
+		}
+	}
+	if more[0] > 0 {
+		clear(out[:w1*w2])
+		addColumns(out[:w1*w2], out[w1*w2:], w1*w2, zero[0][:n[0]])
+	}
+}
+
+func (m *spaceMesh) slice(c []float64, axis int, x coord, _ [3]int, out []float64) {
+	var v [3][maxDegrees]float64
+	for a, ax := range m.axes {
+		if a != axis {
+			ax.valueAt(x[a], v[a][:ax.n])
+		}
+	}
+	n := [3]int{m.axes[0].n, m.axes[1].n, m.axes[2].n}
+	var line [maxDegrees]float64
+	i := 0
+	for g0 := 0; g0 < n[0]; g0++ {
+		for g1 := 0; g1 < n[1]; g1++ {
+			row := c[i : i+n[2]]
+			i += n[2]
+			switch axis {
+			case 0, 1:
+				sum := 0.0
+				for k, z := range v[2][:n[2]] {
+					sum += z * row[k]
+				}
+				if axis == 0 {
+					line[g0] += v[1][g1] * sum
+				} else {
+					line[g1] += v[0][g0] * sum
+				}
+			default:
+				add(line[:n[2]], v[0][g0]*v[1][g1], row)
+			}
+		}
+	}
+	m.axes[axis].poly.coefficients(line[:n[axis]], out)
 }
 
 // placeWeights gives the weights of the nodes in the temperature of a place.
@@ -412,10 +555,8 @@ func (m *spaceMesh) pieces(x coord, c []float64) float64 {
 		if ax.n == 1 {
 			return value(0)
 		}
-		var near [4]int
-		k := ax.line.around(x, &near)
 		vals := make([]float64, ax.n)
-		for _, i := range near[:k] {
+		for i, last := ax.line.reads(x); i <= last; i++ {
 			vals[i] = value(i)
 		}
 		return ax.line.at(coord{x}, vals)

@@ -147,9 +147,6 @@ func (p *problem) offK(t testing.TB, h *History, sol solved) float64 {
 
 func TestMarchedReferenceProblems(t *testing.T) {
 	for _, p := range problems() {
-		if p.id == "D" {
-			continue
-		}
 		t.Run(p.id, func(t *testing.T) {
 			h, err := Solve(p.product, p.steps, Options{})
 			if err != nil {

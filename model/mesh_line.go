@@ -44,15 +44,26 @@ func (m *lineMesh) partOf(x float64) [2]int {
 	return m.parts[0]
 }
 
+// interval finds the node below a place, m, and the first and last node of its layer.
+func (m *lineMesh) interval(x float64) (i, lo, hi int) {
+	p := m.partOf(x)
+	lo, hi = p[0], p[1]
+	i = lo + sort.SearchFloat64s(m.x[lo:hi+1], x) - 1
+	return max(lo, min(i, hi-1)), lo, hi
+}
+
+// reads gives the first and last node that the temperature of a place in radii depends on.
+func (m *lineMesh) reads(x float64) (first, last int) {
+	i, lo, hi := m.interval(x * m.r)
+	return max(lo, i-2), min(hi, i+3)
+}
+
 func (m *lineMesh) at(c coord, t []float64) float64 {
 	if m.kind == lumped {
 		return t[0]
 	}
 	x := c[0] * m.r
-	p := m.partOf(x)
-	lo, hi := p[0], p[1]
-	i := lo + sort.SearchFloat64s(m.x[lo:hi+1], x) - 1
-	i = max(lo, min(i, hi-1))
+	i, lo, hi := m.interval(x)
 	d := m.x[i+1] - m.x[i]
 	y := max(0, min(1, (x-m.x[i])/d))
 	steep := func(j int) float64 { return (t[j+1] - t[j]) / (m.x[j+1] - m.x[j]) }
@@ -86,4 +97,19 @@ func endSlope(near, next, a, b float64) float64 {
 		return 3 * near
 	}
 	return s
+}
+
+func (m *lineMesh) onto(other mesh) func(here, there []float64) {
+	x := other.(*lineMesh).x
+	return func(here, there []float64) {
+		for j := range there {
+			there[j] = m.at(coord{x[j] / m.r}, here)
+		}
+	}
+}
+
+func (m *lineMesh) fill(nodes, out []float64) { copy(out, nodes) }
+
+func (m *lineMesh) slice([]float64, int, coord, [3]int, []float64) {
+	panic("model: control volumes have no polynomials")
 }

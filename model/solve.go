@@ -15,6 +15,9 @@ var goalK = [4]float64{0, 0.0048, 0.0095, 0.019}
 // settleS is the time after a change of surroundings from which the error is estimated unless told otherwise, s; less for small foods.
 const settleS = 30
 
+// settleFo is the Fourier number of the thinnest half axis after which a small food has settled.
+const settleFo = 0.02
+
 // Solve predicts the history of a product through its steps. Conduction with constant properties in each step is solved
 // without time steps: on each axis the field is a sum of polynomials whose modes decay exponentially, media that are constant
 // or straight lines in time are integrated exactly, and the field is carried from step to step by projection. The only error is
@@ -105,7 +108,10 @@ func (s *solver) layOut() {
 	if s.settle = s.options.ErrorFromS; s.settle == 0 {
 		s.settle = settleS
 		for a := 0; a < s.used; a++ {
-			s.settle = min(s.settle, 0.02*s.radii[a]*s.radii[a]/alpha)
+			s.settle = min(s.settle, settleFo*s.radii[a]*s.radii[a]/alpha)
+		}
+		if s.marches() && s.polynomial() {
+			s.settle = s.marchSettle(alpha)
 		}
 	}
 	for i := range s.steps {

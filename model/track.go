@@ -86,3 +86,18 @@ func (k *track) reach(from, to float64) (low, high float64) {
 	}
 	return low, high
 }
+
+// sum gives the sum of the temperatures of all nodes by weight.
+func (k *track) sum(b between, w []float64) float64 {
+	a := k.data[2*k.n*b.i : 2*k.n*(b.i+2)]
+	n := len(w)
+	c0, s0, c1, s1 := a[:n], a[k.n:][:n], a[2*k.n:][:n], a[3*k.n:][:n]
+	var x, y, z, v float64
+	for j, w := range w {
+		x += w * c0[j]
+		y += w * s0[j]
+		z += w * c1[j]
+		v += w * s1[j]
+	}
+	return b.c0*x + b.s0*y + b.c1*z + b.s1*v
+}
