@@ -54,8 +54,7 @@ func TestCheckRefuses(t *testing.T) {
 		field  string
 		says   string
 	}{
-		{"spheroid", func(p *Product, _ []Step) { p.Shape = Spheroid }, "Products row 2", "Shape", "cannot be calculated yet"},
-		{"layered slab", func(p *Product, _ []Step) { p.Shape = LayeredSlab }, "Products row 2", "Shape", "cannot be calculated yet"},
+		{"spheroid without a diameter", func(p *Product, _ []Step) { p.Shape = Spheroid }, "Products row 2", "Diameter", "spheroid needs Diameter"},
 		{"no thickness", func(p *Product, _ []Step) { p.Size.ThicknessM = 0 }, "Products row 2", "Thickness", "needs Thickness"},
 		{"no food", func(p *Product, _ []Step) { p.Food = nil }, "Products row 2", "Food", "no food"},
 		{"properties that follow the temperature", func(p *Product, _ []Step) { p.Food.Table = true }, "Foods row 7", "At temperature", "several temperatures"},
