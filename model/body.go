@@ -12,6 +12,7 @@ import (
 type body struct {
 	kinds [3]axisKind
 	radii [3]float64
+	ball  *spheroidMap // of a spheroid, whose coordinates are ρ and μ; nil: straight axes
 	nodes *nodes
 	order []int // nodes from the centre outwards
 	rank  []int // by node: its place in order
@@ -20,15 +21,21 @@ type body struct {
 	pieces bool
 }
 
-func newBody(kinds [3]axisKind, radii [3]float64, nd *nodes) *body {
+func newBody(of body, nd *nodes) *body {
 	n := nd.count()
-	b := &body{kinds: kinds, radii: radii, nodes: nd, order: make([]int, n), rank: make([]int, n), buf: make([]float64, n)}
+	b := &of
+	b.nodes, b.order, b.rank, b.buf = nd, make([]int, n), make([]int, n), make([]float64, n)
 	far := make([]float64, n)
 	for i := range b.order {
 		b.order[i] = i
 		x := b.node(i)
+		if b.ball != nil {
+			p := b.ball.place(x)
+			far[i] = p.UpM*p.UpM + p.AcrossM*p.AcrossM
+			continue
+		}
 		for a := range x {
-			far[i] += x[a] * x[a] * radii[a] * radii[a]
+			far[i] += x[a] * x[a] * b.radii[a] * b.radii[a]
 		}
 	}
 	slices.SortStableFunc(b.order, func(i, j int) int { return cmp.Compare(far[i], far[j]) })
@@ -55,6 +62,9 @@ func (b *body) node(i int) coord {
 
 // coord turns a place into coordinates, moved into the food if it lies outside.
 func (b *body) coord(p Place) coord {
+	if b.ball != nil {
+		return b.ball.coord(p)
+	}
 	x := coord{p.UpM, p.AcrossM, p.AlongM}
 	for a := range x {
 		switch b.kinds[a] {
@@ -71,11 +81,17 @@ func (b *body) coord(p Place) coord {
 
 // place turns coordinates into a place.
 func (b *body) place(x coord) Place {
+	if b.ball != nil {
+		return b.ball.place(x)
+	}
 	return Place{UpM: x[0] * b.radii[0], AcrossM: x[1] * b.radii[1], AlongM: x[2] * b.radii[2]}
 }
 
 // surface tells whether coordinates lie on the surface.
 func (b *body) surface(x coord) bool {
+	if b.ball != nil {
+		return x[0] == 1
+	}
 	any := false
 	for a := range x {
 		if b.kinds[a] != lumped {
@@ -109,6 +125,11 @@ const flatK = 1e-7
 
 // extremes finds the coldest and hottest place anywhere in the food: among the nodes first, then along the axes between them.
 func (b *body) extremes(s snapshot) (low, high extreme) {
+	if m, ok := s.(*modalShot); ok {
+		if layers, ok := m.f.fn.(*stack); ok {
+			return layers.extremes(b, m)
+		}
+	}
 	s.grid(b.buf)
 	lo, hi := b.lowest()
 	if b.pieces {
@@ -431,6 +452,9 @@ func (h *History) Least(from Spot, surfaceOnly bool, score func(Place) float64) 
 			if b.kinds[a] != lumped && math.Abs(x[a]) == 1 {
 				fixed = a
 			}
+			if b.ball != nil { // the other coordinate runs along the surface
+				break
+			}
 		}
 	}
 	start := best
@@ -453,6 +477,9 @@ func (h *History) Least(from Spot, surfaceOnly bool, score func(Place) float64) 
 func (b *body) spacing(a int, x float64) float64 {
 	xs := b.nodes.x[a]
 	i := min(max(sort.SearchFloat64s(xs, x), 1), len(xs)-1)
+	if xs[i]-xs[i-1] < 1e-6 && i+1 < len(xs) { // the two sides of a joint
+		i++
+	}
 	return (xs[i] - xs[i-1]) / 2
 }
 

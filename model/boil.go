@@ -14,8 +14,10 @@ const boilsK = 5
 // boiling warns of a food that would be hotter than boiling water throughout. It looks at the ends of the steps, since the coldest place
 // warms all the time in surroundings that stay as they are, and between them where the surroundings change.
 func (s *solver) boiling(h *History) {
-	if s.product.Food.Waterless {
-		return
+	for _, f := range s.product.Foods() {
+		if f.Waterless {
+			return
+		}
 	}
 	for i := range h.Spans {
 		sp := &h.Spans[i]

@@ -121,6 +121,12 @@ func (c *checker) layers() {
 		if !(y.ThicknessM > 0) || math.IsInf(y.ThicknessM, 0) {
 			c.add(y.At, "Thickness", "", "a layer needs a thickness, a number above 0", "")
 		}
+		switch last := i == len(p.Layers)-1; {
+		case !(y.BelowM2KW >= 0) || math.IsInf(y.BelowM2KW, 0):
+			c.add(y.At, "Contact resistance below", fmt.Sprintf("%g m²K/W", y.BelowM2KW), "a contact resistance is 0, for layers that touch perfectly, or more", "")
+		case last && y.BelowM2KW > 0:
+			c.add(y.At, "Contact resistance below", fmt.Sprintf("%g m²K/W", y.BelowM2KW), "there is no layer below the last one", "leave it blank; what lies between the food and its surroundings goes into Wrap resistance of the sheet Faces")
+		}
 		switch {
 		case y.Food == nil:
 			c.add(y.At, "Food", "", "no food is given", "type the name of a built-in food or of a row of Foods")
@@ -217,6 +223,10 @@ func reach(p *Product) [3]float64 {
 		return [3]float64{z.ThicknessM / 2, z.WidthM / 2, math.Inf(1)}
 	case Brick:
 		return [3]float64{z.ThicknessM / 2, z.WidthM / 2, z.LengthM / 2}
+	case Spheroid:
+		return [3]float64{z.ThicknessM / 2, z.DiameterM / 2, 0}
+	case LayeredSlab:
+		return [3]float64{z.ThicknessM / 2, math.Inf(1), math.Inf(1)}
 	}
 	return [3]float64{math.Inf(1), math.Inf(1), math.Inf(1)}
 }

@@ -35,11 +35,12 @@ type coord [3]float64
 type chainStep struct {
 	durS   float64 // as it runs
 	props  Properties
-	lo, up [3]film   // by axis
-	media  []Course  // by group, each with a point at 0
-	knots  []float64 // instants within the step at which the slope of a medium changes, from 0, the first is 0
-	lumpW  float64   // stirred: Σ U·A/(ρcV), 1/s
-	lumpG  []float64 // stirred: by group, 1/s
+	layers []Properties // layered slab: by layer from the top
+	lo, up [3]film      // by axis
+	media  []Course     // by group, each with a point at 0
+	knots  []float64    // instants within the step at which the slope of a medium changes, from 0, the first is 0
+	lumpW  float64      // stirred: Σ U·A/(ρcV), 1/s
+	lumpG  []float64    // stirred: by group, 1/s
 }
 
 // nodes are the places at which snapshots are looked at, by axis.

@@ -7,12 +7,13 @@ type Span struct {
 	Step        *Step
 	StartS      float64 // from the start of the chain
 	EndS        float64
-	Reached     *bool      // for a step with Until: whether the slowest place reached it before the duration ran out
-	PropsAtC    float64    // temperature at which the properties were taken; meaningless if Props is constant
-	Props       Properties // used throughout the step
-	Films       []FilmUsed // one a face with its own surroundings, at least one
-	MediumFromC *float64   // lowest medium as typed, where it was raised to the freezing point; nil otherwise
-	MediumToC   *float64   // what it was raised to
+	Reached     *bool        // for a step with Until: whether the slowest place reached it before the duration ran out
+	PropsAtC    float64      // temperature at which the properties were taken; meaningless if Props is constant
+	Props       Properties   // used throughout the step
+	LayerProps  []Properties // layered slab: by layer from the top; Props are then those of a slab that conducts and holds as much; nil: no layers
+	Films       []FilmUsed   // one a face with its own surroundings, at least one
+	MediumFromC *float64     // lowest medium as typed, where it was raised to the freezing point; nil otherwise
+	MediumToC   *float64     // what it was raised to
 }
 
 // FilmUsed tells how a face met its surroundings in a step.

@@ -72,7 +72,7 @@ const (
 )
 
 // polynomial tells whether the march has polynomials in space: smooth fields of more than one direction.
-func (s *solver) polynomial() bool { return s.used > 1 && !s.mayFreeze() }
+func (s *solver) polynomial() bool { return s.used > 1 && !s.front }
 
 // marchGoalK is the error that a march is to keep, K.
 const marchGoalK = 0.019
@@ -236,7 +236,7 @@ func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
 		} else {
 			d = use * grow
 		}
-		if st.UntilC != nil && f.there(*st.UntilC, st.Stage.Heats) {
+		if st.UntilC != nil && f.missing(span.StartS+tau, *st.UntilC, st.Stage.Heats) <= 0 {
 			cs.durS = f.arrive(*st.UntilC, st.Stage.Heats, span.StartS, from)
 			reached := true
 			span.Reached = &reached
@@ -250,13 +250,13 @@ func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
 	return cs
 }
 
-// there tells whether the slowest place has reached a temperature.
-func (f *marched) there(goal float64, heats bool) bool {
-	low, high := f.state.span()
+// missing is by how much the slowest place falls short of a temperature at t, K; below 0 it is past it.
+func (f *marched) missing(t, goal float64, heats bool) float64 {
+	low, high := f.body.extremes(f.at(t))
 	if heats {
-		return low >= goal
+		return goal - low.c
 	}
-	return high <= goal
+	return high.c - goal
 }
 
 // arrive finds when, between the last two instants of the track, the slowest place reached a temperature, and steps there again; from is
@@ -264,27 +264,27 @@ func (f *marched) there(goal float64, heats bool) bool {
 func (f *marched) arrive(goal float64, heats bool, start, from float64) float64 {
 	k := f.track
 	lo, hi := start+from, k.times[len(k.times)-1]
-	now := make([]float64, k.n)
+	before := f.missing(lo, goal, heats)
 	for hi-lo > 1e-4 {
-		mid := (lo + hi) / 2
-		k.all(k.find(mid), now)
-		low, high := now[0], now[0]
-		for _, c := range now {
-			low, high = min(low, c), max(high, c)
-		}
-		if heats && low >= goal || !heats && high <= goal {
+		if mid := (lo + hi) / 2; f.missing(mid, goal, heats) <= 0 {
 			hi = mid
 		} else {
 			lo = mid
 		}
 	}
-	hi = max(hi, start+1e-3) // a step of no length cannot be drawn or judged
-	k.cut(len(k.times) - 1)
-	f.state.restore()
-	f.state.try(from, hi-start-from)
-	f.state.accept()
-	f.state.keep(k, hi)
-	return hi - start
+	for try := 0; ; try++ { // a step to there lands a little off the cubic between the two instants
+		hi = max(hi, start+1e-3) // a step of no length cannot be drawn or judged
+		k.cut(len(k.times) - 1)
+		f.state.restore()
+		f.state.try(from, hi-start-from)
+		f.state.accept()
+		f.state.keep(k, hi)
+		left := f.missing(hi, goal, heats)
+		if math.Abs(left) < 1e-6 || try == 4 || before <= left {
+			return hi - start
+		}
+		hi += left * (hi - start - from) / (before - left)
+	}
 }
 
 // marched is a field that was marched: the track of its nodes, and what stands between them.
@@ -409,6 +409,10 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 	if s.used == 0 {
 		kind, r = lumped, s.product.Size.VolumeM3/s.product.Size.AreaM2
 	}
+	kinds := s.kinds
+	if s.product.Shape == LayeredSlab {
+		kind, kinds[0] = planeFull, planeFull
+	}
 	g := newLineGrid(s.product, kind, r, e.volumes(lineNodes))
 	m := newLineMarch(g, laws)
 	m.lower, m.upper = s.faces[0][0], s.faces[0][1]
@@ -418,15 +422,14 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 	for i, x := range g.x {
 		nd.x[0][i] = x / g.r
 	}
-	f.body = newBody(s.kinds, s.radii, nd)
-	f.body.pieces = true
+	f.body = newBody(body{kinds: kinds, radii: s.radii, pieces: true}, nd)
 }
 
 // laySpace lays out a body of two or three axes.
 func (s *solver) laySpace(f *marched, l *law, e effort) {
 	var axes [3]*spaceAxis
 	nd := &nodes{x: [3][]float64{{0}, {0}, {0}}, phi: [3][]float64{{1}, {1}, {1}}}
-	front := s.mayFreeze()
+	front := s.front
 	for a := range axes {
 		switch {
 		case a >= s.used:
@@ -441,8 +444,7 @@ func (s *solver) laySpace(f *marched, l *law, e effort) {
 		axes[a].bodyNodes(nd, a)
 	}
 	f.state, f.mesh = newSpaceMarch(axes, l, s.product.StartC), newSpaceMesh(axes)
-	f.body = newBody(s.kinds, s.radii, nd)
-	f.body.pieces = front
+	f.body = newBody(body{kinds: s.kinds, radii: s.radii, pieces: front}, nd)
 }
 
 // marchSettleS is the longest time after a change of surroundings from which the error is held where polynomials in two or three

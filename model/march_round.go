@@ -5,9 +5,7 @@ import (
 	"math"
 )
 
-// roundMesh is a spheroid of semi-axes a (along the axis of revolution) and b in the coordinates rho, the share of the way from the centre
-// to the surface, and mu, the cosine in the unit sphere that it is stretched from: up = a·rho·mu, across = b·rho·sqrt(1-mu²). Fields that are
-// smooth in space are polynomials in rho² and mu² there.
+// roundMesh is a spheroid in the coordinates of its map, in which fields that are smooth in space are polynomials in ρ² and μ².
 type roundMesh struct {
 	spaceMesh
 	a, b       float64   // m
@@ -18,14 +16,15 @@ type roundMesh struct {
 }
 
 // newRoundMesh makes a mesh of nr × nm nodes.
-func newRoundMesh(a, b float64, nr, nm int) *roundMesh {
+func newRoundMesh(ball *spheroidMap, nr, nm int) *roundMesh {
+	a, b := ball.a, ball.b
 	rho, mu := collocationOf(spherical, nr), collocationOf(planeHalf, nm)
 	axes := [3]*spaceAxis{
 		{kind: spherical, n: nr, x: rho.x, w: rho.w, poly: rho, face: [2]float64{0, 1}},
 		{kind: planeHalf, n: nm, x: mu.x, w: mu.w, poly: mu},
 		{kind: lumped, n: 1, x: []float64{0}, w: []float64{1}, k: []float64{0}},
 	}
-	m := &roundMesh{spaceMesh: *newSpaceMesh(axes), a: a, b: b}
+	m := &roundMesh{spaceMesh: *newSpaceMesh(axes)}
 	for i, r := range rho.x {
 		for j, c := range mu.x {
 			w, s2 := m.w[i*nm+j], 1-c*c
@@ -35,7 +34,7 @@ func newRoundMesh(a, b float64, nr, nm int) *roundMesh {
 		}
 	}
 	for _, c := range mu.x { // area element over volume, by the share of the node
-		m.face = append(m.face, 3*math.Sqrt(a*a*(1-c*c)+b*b*c*c)/(a*b*rho.w[nr-1]))
+		m.face = append(m.face, ball.surfaceShare(c)/rho.w[nr-1])
 	}
 	m.ur, m.um, m.v = make([]float64, m.n), make([]float64, m.n), make([]float64, m.n)
 	m.fast = m.fastest()
@@ -104,13 +103,12 @@ func (m *roundMesh) String() string {
 
 // layRound lays out a spheroid.
 func (s *solver) layRound(f *marched, l *law, e effort) {
-	z := &s.product.Size
-	m := newRoundMesh(z.ThicknessM/2, z.DiameterM/2, s.smoothNodes(0, e), s.smoothNodes(1, e))
+	m := newRoundMesh(s.ball, s.smoothNodes(0, e), s.smoothNodes(1, e))
 	march := newSpaceMarch(m.axes, l, s.product.StartC)
 	march.round = m
 	f.state, f.mesh = march, m
 	nd := &nodes{x: [3][]float64{{0}, {0}, {0}}, phi: [3][]float64{{1}, {1}, {1}}}
 	m.axes[0].bodyNodes(nd, 0)
 	m.axes[1].bodyNodes(nd, 1)
-	f.body = newBody([3]axisKind{spherical, planeHalf}, s.radii, nd)
+	f.body = newBody(body{kinds: [3]axisKind{spherical, planeHalf}, radii: s.radii, ball: s.ball}, nd)
 }

@@ -284,3 +284,32 @@ func (s *productShot) mean() float64 {
 	}
 	return sum
 }
+
+// freezingC is the highest freezing point of its foods, °C; nil if one is not known.
+func (p *Product) freezingC() *float64 {
+	var most *float64
+	for _, f := range p.Foods() {
+		if f.FreezingC == nil {
+			return nil
+		}
+		if most == nil || *f.FreezingC > *most {
+			most = f.FreezingC
+		}
+	}
+	return most
+}
+
+// together gives the properties at a temperature of a slab that conducts and holds as much heat as the layers with their joints, with the
+// density of the whole.
+func (p *Product) together(tC float64) Properties {
+	var thick, against, mass, heat float64
+	for i := range p.Layers {
+		l := &p.Layers[i]
+		q := l.Food.Props(tC)
+		thick += l.ThicknessM
+		against += l.ThicknessM/q.KWmK + l.BelowM2KW
+		mass += l.ThicknessM * q.RhoKgM3
+		heat += l.ThicknessM * q.RhoKgM3 * q.CJkgK
+	}
+	return Properties{KWmK: thick / against, RhoKgM3: mass / thick, CJkgK: heat / mass}
+}

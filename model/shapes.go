@@ -16,11 +16,9 @@ var (
 	ShortCylinder = &Shape{Name: "short cylinder", Needs: []string{"Diameter", "Length"}, Faces: []*Face{Top, Underside, Sides}, Help: "tins, pots, pies: heat crosses the ends and the curved face"}
 	Bar           = &Shape{Name: "bar", Needs: []string{"Thickness", "Width"}, Faces: []*Face{Top, Underside, Sides}, Help: "long and rectangular: heat crosses thickness and width"}
 	Brick         = &Shape{Name: "brick", Needs: []string{"Thickness", "Width", "Length"}, Faces: []*Face{Top, Underside, Sides, Ends}, Help: "joints, blocks, portions: heat crosses all six faces"}
-	Spheroid      = &Shape{Name: "spheroid", Needs: []string{"Thickness", "Diameter"}, Help: "eggs, potatoes (thickness along the axis)",
-		Refused: "is a shape that cannot be calculated yet"}
-	LayeredSlab = &Shape{Name: "layered slab", Help: "layers of different foods", Faces: []*Face{Top, Underside},
-		Refused: "is a shape that cannot be calculated yet"}
-	Stirred = &Shape{Name: "stirred", Needs: []string{"Volume", "Surface area"}, Help: "well mixed throughout: soups and sauces that are stirred all the time"}
+	Spheroid      = &Shape{Name: "spheroid", Needs: []string{"Thickness", "Diameter"}, Help: "eggs, potatoes, whole joints: thickness along its axis, diameter across it"}
+	LayeredSlab   = &Shape{Name: "layered slab", Faces: []*Face{Top, Underside}, Help: "layers of different foods, wide and flat: each is a row of the sheet Layers"}
+	Stirred       = &Shape{Name: "stirred", Needs: []string{"Volume", "Surface area"}, Help: "well mixed throughout: soups and sauces that are stirred all the time"}
 
 	Shapes = []*Shape{Slab, Cylinder, Sphere, ShortCylinder, Bar, Brick, Spheroid, LayeredSlab, Stirred}
 )

@@ -44,11 +44,19 @@ func Solve(p Product, steps []Step, o Options) (*History, error) {
 			return nil, s.refused
 		}
 		s.estimate(h, more)
-		if h.ErrorK <= goalK[s.used] || s.full(more) {
+		if h.ErrorK <= s.goal() || s.full(more) {
 			s.boiling(h)
 			return h, nil
 		}
 	}
+}
+
+// goal is what the error estimate is brought below, K.
+func (s *solver) goal() float64 {
+	if s.ball != nil || s.product.Shape == LayeredSlab {
+		return goalK[3]
+	}
+	return goalK[s.used]
 }
 
 type solver struct {
@@ -57,16 +65,18 @@ type solver struct {
 	options Options
 	kinds   [3]axisKind
 	radii   [3]float64
-	faces   [3][2]*Face // lower and upper face by axis
-	used    int         // axes with extent
-	settle  float64     // s
-	foMin   [3]float64  // Fourier number of settle by axis
-	sharp   [3]bool     // a film on the axis so strong that the surface all but jumps
+	ball    *spheroidMap // spheroid
+	faces   [3][2]*Face  // lower and upper face by axis
+	used    int          // axes with extent
+	settle  float64      // s
+	foMin   [3]float64   // Fourier number of settle by axis
+	sharp   [3]bool      // a film on the axis so strong that the surface all but jumps
 	chain   []*chainStep
 	main    field
 	tmp     *scratch    // for what does not outlive the solution
 	refused cell.Errors // found while solving
 	laws    []*law      // of the foods, by layer; made when a march needs them
+	front   bool        // marched, and any place may freeze or melt
 }
 
 // layOut finds the axes of the product.
@@ -102,7 +112,18 @@ func (s *solver) layOut() {
 		upright(z.ThicknessM / 2)
 		set(1, planeHalf, z.WidthM/2, Sides, Sides)
 		set(2, planeHalf, z.LengthM/2, Ends, Ends)
+	case Spheroid:
+		s.ball = &spheroidMap{a: z.ThicknessM / 2, b: z.DiameterM / 2}
+		set(0, planeHalf, max(s.ball.a, s.ball.b), nil, nil)
+		set(1, planeHalf, min(s.ball.a, s.ball.b), nil, nil)
+	case LayeredSlab:
+		upright(z.ThicknessM / 2)
+		if !symmetric(s.product.Layers) {
+			s.kinds[0] = planeFull
+		}
 	}
+	marches := s.marches()
+	s.front = marches && s.mayFreeze()
 	q := s.props(50)
 	alpha := q.KWmK / (q.RhoKgM3 * q.CJkgK)
 	if s.settle = s.options.ErrorFromS; s.settle == 0 {
@@ -110,7 +131,7 @@ func (s *solver) layOut() {
 		for a := 0; a < s.used; a++ {
 			s.settle = min(s.settle, settleFo*s.radii[a]*s.radii[a]/alpha)
 		}
-		if s.marches() && s.polynomial() {
+		if marches && s.polynomial() {
 			s.settle = s.marchSettle(alpha)
 		}
 	}
@@ -134,7 +155,12 @@ const sharpBiot = 15
 
 // props gives the food's properties at a temperature, with the run's own conductivity factor.
 func (s *solver) props(tC float64) Properties {
-	q := s.product.Food.Props(tC)
+	var q Properties
+	if s.product.Shape == LayeredSlab {
+		q = s.product.together(tC)
+	} else {
+		q = s.product.Food.Props(tC)
+	}
 	q.KWmK *= s.options.ConductivityFactor
 	return q
 }
@@ -144,6 +170,9 @@ func (s *solver) props(tC float64) Properties {
 func (s *solver) degrees(a, more int) int {
 	if s.kinds[a] == lumped {
 		return 1
+	}
+	if s.ball != nil {
+		return s.ballDegrees(a, more)
 	}
 	// The numbers were fitted to the reference problems so that the first try is nearly always enough.
 	n := 2.5 + 2.15*math.Pow(s.foMin[a], -0.25)
@@ -166,7 +195,7 @@ func (s *solver) degrees(a, more int) int {
 // full tells whether no more polynomials are to be had.
 func (s *solver) full(more int) bool {
 	for a := 0; a < s.used; a++ {
-		if s.degrees(a, more) < maxDegrees {
+		if n := s.degrees(a, more); n < maxDegrees && (s.ball == nil || n < mostBall) {
 			return more >= 18
 		}
 	}
@@ -179,6 +208,8 @@ func (s *solver) fewer(a, more int) int {
 	switch {
 	case s.kinds[a] == lumped:
 		return 1
+	case s.product.Shape == LayeredSlab: // of layers with few polynomials one less
+		return n * 4 / 5
 	case s.kinds[a] == planeFull:
 		return n - 4
 	}
@@ -192,6 +223,9 @@ func (s *solver) grid(degrees func(a int) int, coarse bool) (axes [3]*axis, nd *
 		axes[a] = &axis{base: baseOf(s.kinds[a], degrees(a)), radiusM: s.radii[a], lower: s.faces[a][0], upper: s.faces[a][1]}
 		at := axes[a].sitesFor(s.used, coarse)
 		nd.x[a], nd.phi[a] = at.x, at.phi
+	}
+	if s.product.Shape == LayeredSlab {
+		nd.x[0], nd.phi[0] = s.layers(axes[0].n).nodes(coarse), nil
 	}
 	return axes, nd
 }
@@ -236,7 +270,7 @@ func nodesOf(kind axisKind, used, functions int, coarse bool) []float64 {
 func (s *solver) run(more int) *History {
 	h := &History{Product: s.product, Points: append([]Point{{Name: "centre"}}, s.product.Points...)}
 	axes, nd := s.grid(func(a int) int { return s.degrees(a, more) }, false)
-	h.body = newBody(s.kinds, s.radii, nd)
+	h.body = newBody(body{kinds: s.kinds, radii: s.radii, ball: s.ball}, nd)
 	s.chain = s.chain[:0]
 	s.main = nil
 	t := 0.0
@@ -265,6 +299,18 @@ func (s *solver) run(more int) *History {
 
 // build runs the chain, or only its last step if a field that holds the others is given; a new field lies in mem.
 func (s *solver) build(axes [3]*axis, nd *nodes, f field, mem *slab) field {
+	if fn := s.functions(axes); fn != nil {
+		m, ok := f.(*modal)
+		if ok {
+			m.run(s.chain[len(s.chain)-1])
+			return m
+		}
+		m = newModal(fn, nd, s.product.StartC, mem, &s.tmp.call)
+		for _, cs := range s.chain {
+			m.run(cs)
+		}
+		return m
+	}
 	split := separates(axes, s.chain, len(s.steps))
 	if p, ok := f.(*product); ok && split {
 		p.run(s.chain[len(s.chain)-1])
@@ -380,8 +426,10 @@ func (s *solver) ready(body *body, span *Span, axes [3]*axis, nd *nodes, food [2
 
 // searches tells whether properties or films of the step depend on the food's temperature, so that it has to be solved to know them.
 func (s *solver) searches(st *Step) bool {
-	if s.product.Food.Composed {
-		return true
+	for _, f := range s.product.Foods() {
+		if f.Composed {
+			return true
+		}
 	}
 	for _, e := range exposures(s.product.Shape, st) {
 		if e.filmDepends() {
@@ -406,6 +454,12 @@ func (s *solver) film(span *Span, meanC, within float64) *chainStep {
 	span.Props, span.PropsAtC = s.props(meanC), meanC
 	span.Films = span.Films[:0]
 	cs := &chainStep{durS: st.DurationS, props: span.Props}
+	for i := range s.product.Layers {
+		q := s.product.Layers[i].Food.Props(meanC)
+		q.KWmK *= s.options.ConductivityFactor
+		cs.layers = append(cs.layers, q)
+	}
+	span.LayerProps = cs.layers
 	cs.media, cs.knots = cs.media[:0], []float64{0}
 	done := map[*Exposure]film{}
 	on := func(face *Face) film {
@@ -582,6 +636,7 @@ func sameCourse(a, b *Course) bool {
 func sameExposure(a, b *Exposure) bool {
 	same := func(x, y *float64) bool { return x == nil && y == nil || x != nil && y != nil && *x == *y }
 	return a == b || a.Surface == b.Surface && same(a.FilmW, b.FilmW) && same(a.AirMS, b.AirMS) && same(a.WrapM2KW, b.WrapM2KW) &&
+		same(a.RadiatingC, b.RadiatingC) && same(a.Emissivity, b.Emissivity) && same(a.RH, b.RH) && a.wet() == b.wet() && slices.Equal(a.Medium.RH, b.Medium.RH) &&
 		sameCourse(&a.Medium, &b.Medium)
 }
 
@@ -683,6 +738,8 @@ func (s *solver) again(h *History, more int) float64 {
 		case *product:
 			was, mem, f.nodes, f.mem = f.nodes, f.mem, n, m
 			f.forget()
+		case *modal:
+			was, f.nodes = f.nodes, n
 		}
 		return was, mem
 	}
@@ -839,6 +896,9 @@ func (s *solver) method() string {
 		n += fmt.Sprint(axisSize(s.main, a))
 	}
 	form := "polynomials through the food"
+	if f, ok := s.main.(*modal); ok {
+		n, form = fmt.Sprint(f.fn.size()), "polynomials on the whole of it"
+	}
 	if _, ok := s.main.(*product); ok {
 		form = "polynomials, as products of axes"
 	}

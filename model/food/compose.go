@@ -13,6 +13,9 @@ import (
 // Method says how properties follow from composition; it ends the source of every composed material.
 const Method = "properties from composition: polynomials of Choi & Okos (1986) with 4176.2 J/(kg·K) for water, conductivity by the rule of Levy (1981)"
 
+// poresMethod goes on after Method where the air is in pores that join.
+const poresMethod = ", air in pores that join by the effective medium of Landauer (1952)"
+
 // The range of the polynomials, °C.
 const (
 	LowC  = -40
@@ -139,6 +142,9 @@ func Compose(name, source string, c Composition) (model.Material, error) {
 		Composed:    true,
 		Composition: c.String(),
 		Waterless:   c.WaterPc == 0,
+	}
+	if c.PoresJoin {
+		material.Source += poresMethod
 	}
 	if c.FreezingC != nil {
 		tf := *c.FreezingC

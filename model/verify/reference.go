@@ -18,7 +18,7 @@ type ReferenceProblem struct {
 	EdgeK   float64 // accuracy at a lower edge between unlike faces and for the coldest and hottest place, K
 }
 
-// References lists the reference problems: constant properties, one, two and three directions.
+// References lists the reference problems: constant properties, one, two and three directions, spheroids and layers.
 func References() []ReferenceProblem {
 	p := model.Properties{KWmK: 0.48, RhoKgM3: 1060, CJkgK: 3600}
 	slab := func(thicknessM, startC float64) model.Product {
@@ -58,6 +58,12 @@ func References() []ReferenceProblem {
 			Problem: Problem{"sphere 44 mm, boiling water, ice water", model.Product{Name: "sphere", Shape: model.Sphere, Size: model.Size{DiameterM: 0.044},
 				Food: material(model.Properties{KWmK: 0.5, RhoKgM3: 1040, CJkgK: 3700}), StartC: 20},
 				[]model.Step{step("boil", 900, exposure(1200, 100)), step("ice water", 900, exposure(600, 0.5))}}},
+		{ID: "F1", AllowK: 0.02, EdgeK: 0.02, Points: spheroidPoints(0.06, 0.04),
+			Problem: Problem{"long spheroid 120 × 80 mm, cook, rest, chill", spheroid(0.06, 0.04, 5, p), chain}},
+		{ID: "F2", AllowK: 0.02, EdgeK: 0.02, Points: spheroidPoints(0.03, 0.05),
+			Problem: Problem{"flat spheroid 60 × 100 mm, cook, rest, chill", spheroid(0.03, 0.05, 5, p), chain}},
+		{ID: "G", AllowK: 0.02, EdgeK: 0.02, Points: up("centre", 0, up("filling_at_joint", 0.02, up("pastry_at_joint", 0.020000001, up("pastry_mid", 0.023, up("surface", 0.026, nil))))),
+			Problem: Problem{"filling of 40 mm in pastry of 6 mm, cook, rest, chill", layered(5, crust(0.006, 0.002, model.Properties{KWmK: 0.25, RhoKgM3: 600, CJkgK: 2200}, 0.04, model.Properties{KWmK: 0.5, RhoKgM3: 1050, CJkgK: 3600})...), chain}},
 		{ID: "J", AllowK: 0.005, EdgeK: 0.005, Points: up("centre", 0, up("quarter", 0.015, up("surface", 0.03, nil))),
 			Problem: Problem{"slab 60 mm, chiller that settles", slab(0.06, 70), []model.Step{settling()}}},
 		{ID: "K", AllowK: 0.02, EdgeK: 0.03, FromLow: true, Points: trayPoints(),
@@ -66,6 +72,30 @@ func References() []ReferenceProblem {
 				traySteps("rest", 900, [3]model.Exposure{exposure(8, 22), exposure(6, 22), exposure(15, 22)}),
 				traySteps("chill", 14400, [3]model.Exposure{exposure(35, 2), exposure(20, 2), exposure(40, 2)})}}},
 	}
+}
+
+// spheroid is a spheroid with half axes a along its axis and b across, m.
+func spheroid(a, b, startC float64, p model.Properties) model.Product {
+	return model.Product{Name: "spheroid", Shape: model.Spheroid, Size: model.Size{ThicknessM: 2 * a, DiameterM: 2 * b}, Food: material(p), StartC: startC}
+}
+
+func spheroidPoints(a, b float64) map[string]model.Place {
+	return map[string]model.Place{"centre": {}, "pole": {UpM: a}, "equator": {AcrossM: b}, "half_pole": {UpM: a / 2}, "half_equator": {AcrossM: b / 2}}
+}
+
+// layered is a slab of layers.
+func layered(startC float64, layers ...model.Layer) model.Product {
+	p := model.Product{Name: "layered slab", Shape: model.LayeredSlab, Layers: layers, StartC: startC}
+	for _, l := range layers {
+		p.Size.ThicknessM += l.ThicknessM
+	}
+	return p
+}
+
+// crust is a core between two crusts, each with a contact resistance, m²·K/W, to the core; thicknesses in m.
+func crust(crustM, contactM2KW float64, ofCrust model.Properties, coreM float64, ofCore model.Properties) []model.Layer {
+	outside := material(ofCrust)
+	return []model.Layer{{Food: outside, ThicknessM: crustM, BelowM2KW: contactM2KW}, {Food: material(ofCore), ThicknessM: coreM, BelowM2KW: contactM2KW}, {Food: outside, ThicknessM: crustM}}
 }
 
 // settling is a chiller at 2 + 10·exp(-t/1200 s) °C for 6 h, film 18 W/(m²·K), as straight lines: within 0.0001 K of the law, which bends
@@ -125,6 +155,15 @@ func referenceCases() []Case {
 		sampled("C", "hottest place", 5100, 84.63564, hottest),
 		point("E", "surface", 60, 94.62478),
 		point("E", "centre", 1080, 87.71003),
+		point("F1", "pole", 600, 74.47924),
+		point("F1", "centre", 6300, 82.41315),
+		sampled("F1", "hottest place", 5100, 98.90158, hottest),
+		point("F2", "equator", 600, 74.583),
+		point("F2", "centre", 3600, 88.09131),
+		sampled("F2", "mean", 1800, 78.68907, mean),
+		point("G", "pastry_at_joint", 600, 40.50406),
+		point("G", "centre", 3600, 63.44954),
+		sampled("G", "mean", 6300, 48.24528, mean),
 		sampled("J", "mean", 7200, 32.41275, mean),
 		sampled("K", "coldest place", 600, 5.02081, coldest),
 		sampled("K", "hottest place", 6300, 73.13478, hottest),

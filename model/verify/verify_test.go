@@ -375,7 +375,7 @@ func (r *ReferenceProblem) holdRow(t *testing.T, h *model.History, s *model.Samp
 func (r *ReferenceProblem) place(m []any) model.Place {
 	x := func(i int) float64 { return m[i].(float64) }
 	switch {
-	case r.ID == "C": // r, z from mid-height
+	case r.ID == "C" || r.Product.Shape == model.Spheroid: // r, z from mid-height
 		return model.Place{UpM: x(1), AcrossM: x(0)}
 	case r.ID == "K": // x, y from centre; z from below
 		return model.Place{UpM: x(2) - r.Product.Size.ThicknessM/2, AcrossM: x(1), AlongM: x(0)}
