@@ -60,8 +60,8 @@ var (
 // churchillBernstein is the Nusselt number of a cylinder in cross flow, on its diameter, for Re·Pr > 0.2
 // (Churchill & Bernstein 1977, J. Heat Transfer 99:300-306); a lower bound of the data for Re·Pr > 0.4.
 func churchillBernstein(re, pr float64) float64 {
-	return 0.3 + 0.62*math.Sqrt(re)*math.Cbrt(pr)/math.Pow(1+math.Pow(0.4/pr, 2.0/3), 0.25)*
-		math.Pow(1+math.Pow(re/282000, 5.0/8), 4.0/5)
+	c := math.Cbrt(0.4 / pr)
+	return 0.3 + 0.62*math.Sqrt(re)*math.Cbrt(pr)/math.Sqrt(math.Sqrt(1+c*c))*math.Pow(1+math.Pow(re/282000, 5.0/8), 4.0/5)
 }
 
 // sphereForced is the Nusselt number of a sphere in a stream, on its diameter, 100 ≤ Re ≤ 50000, 0.003 ≤ Pr ≤ 10
@@ -78,7 +78,7 @@ func plateForced(re, pr float64) float64 { return 0.664 * math.Sqrt(re) * math.C
 // churchillChu is the Nusselt number of a horizontal cylinder in still fluid, on its diameter, 1e-5 < Ra < 1e12
 // (Churchill & Chu 1975, Int. J. Heat Mass Transfer 18:1049-1053).
 func churchillChu(ra, pr float64) float64 {
-	x := 0.60 + 0.387*math.Pow(ra, 1.0/6)/math.Pow(1+math.Pow(0.559/pr, 9.0/16), 8.0/27)
+	x := 0.60 + 0.387*math.Cbrt(math.Sqrt(ra))/math.Pow(1+math.Pow(0.559/pr, 9.0/16), 8.0/27)
 	return x * x
 }
 
@@ -86,5 +86,5 @@ func churchillChu(ra, pr float64) float64 {
 // (Churchill 1983, Heat Exchanger Design Handbook, section 2.5.7; section from memory).
 func sphereFree(ra, pr float64) float64 {
 	p := 1 + math.Pow(0.469/pr, 9.0/16)
-	return 2 + 0.589*math.Pow(ra, 0.25)/math.Pow(p, 4.0/9)*math.Pow(1+7.44e-8*ra/math.Pow(p, 16.0/9), 1.0/12)
+	return 2 + 0.589*math.Sqrt(math.Sqrt(ra))/math.Pow(p, 4.0/9)*math.Pow(1+7.44e-8*ra/math.Pow(p, 16.0/9), 1.0/12)
 }

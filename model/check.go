@@ -140,6 +140,7 @@ func (c *checker) layers() {
 // foodAt looks at a food that the row at names.
 func (c *checker) foodAt(f *Material, row cell.Ref) {
 	p := c.product
+	c.activity(f)
 	at, field := f.At, "Flows"
 	if at.IsZero() { // a built-in food has no row of its own
 		at, field = row, "Food"
@@ -255,13 +256,8 @@ func (c *checker) step(st *Step) {
 }
 
 func (c *checker) exposure(st *Step, e *Exposure, before float64) {
-	if e.RadiatingC != nil || e.Emissivity != nil {
-		field := "Radiating temperature"
-		if e.RadiatingC == nil {
-			field = "Emissivity"
-		}
-		c.add(e.At, field, "", "radiation cannot be calculated yet", "leave it out, which heats and chills more slowly, or use film with a coefficient that includes it")
-	}
+	c.radiation(e)
+	c.moisture(e)
 	if e.Cover == LooseLid && e.WrapM2KW == nil {
 		c.add(e.At, "Wrap resistance", "", "a loose lid needs the resistance of its air gap", "about 0.04 m²K/W a millimetre of air")
 	}
@@ -296,12 +292,119 @@ func (c *checker) exposure(st *Step, e *Exposure, before float64) {
 		}
 	}
 	c.cold(st, e, field, low)
+	if r := e.RadiatingC; r != nil && e.inAir() && *r < low {
+		c.cold(st, e, "Radiating temperature", *r)
+	}
+	if st.DurationS > 0 {
+		c.chilled(st, e)
+	}
 }
 
-// air asks for dry or wet where air heats the food.
-func (c *checker) air(st *Step, e *Exposure, high, before float64) {
-	if e.Surface != StillAir && e.Surface != MovingAir {
+// radiation looks at Radiating temperature and Emissivity.
+func (c *checker) radiation(e *Exposure) {
+	if e.RadiatingC == nil && e.Emissivity == nil {
 		return
+	}
+	field, typed := "Emissivity", ""
+	if e.Emissivity != nil {
+		typed = fmt.Sprintf("%g", *e.Emissivity)
+	}
+	if e.RadiatingC != nil && !e.inAir() {
+		field, typed = "Radiating temperature", fmt.Sprintf("%g °C", *e.RadiatingC)
+	}
+	switch {
+	case e.Surface == Film:
+		c.add(e.At, field, typed, "with the surroundings film the coefficient stands for everything that happens at the surface, radiation too",
+			"use still air or moving air; the column Film coefficient is then for convection alone, and radiation is added")
+	case !e.inAir():
+		c.add(e.At, field, typed, fmt.Sprintf("radiation counts in still air and moving air only, not in %s", e.Surface.Name), "leave it out")
+	case e.Emissivity != nil && !(*e.Emissivity > 0 && *e.Emissivity <= 1):
+		c.add(e.At, field, typed, "an emissivity is more than 0 and at most 1", fmt.Sprintf("food has 0.9 to 0.95; left blank, %g is taken", usualEmissivity))
+	case e.RadiatingC == nil:
+		c.add(e.At, field, typed, "an emissivity needs the temperature of what the food sees", "type the temperature of the walls or elements into Radiating temperature, or leave both out")
+	case !(*e.RadiatingC > -273.15) || math.IsInf(*e.RadiatingC, 0):
+		c.add(e.At, "Radiating temperature", fmt.Sprintf("%g °C", *e.RadiatingC), "is no temperature above absolute zero", "")
+	}
+}
+
+// moisture looks at Relative humidity and Surface.
+func (c *checker) moisture(e *Exposure) {
+	share := func(rh float64) bool { return rh >= 0 && rh <= 100 }
+	if e.RH != nil && !share(*e.RH) {
+		c.add(e.At, "Relative humidity", fmt.Sprintf("%g %%", *e.RH), "a relative humidity lies between 0 and 100 %", "")
+	}
+	for _, rh := range e.Medium.RH {
+		if !share(rh) {
+			c.add(e.At, "Course", e.Medium.Name, fmt.Sprintf("the course has a relative humidity of %g %%; it lies between 0 and 100 %%", rh), "")
+			break
+		}
+	}
+	if e.Surface == Steam && e.FilmW != nil && (e.RH != nil || e.Medium.RH != nil) {
+		c.add(e.At, "Film coefficient", fmt.Sprintf("%g W/m²·K", *e.FilmW), "steam with a relative humidity has a film of its own, by the air in it, and a typed film stands for everything", "leave out one of the two")
+	}
+	if !e.wet() {
+		return
+	}
+	switch {
+	case e.Surface == Film:
+		c.add(e.At, "Surface", "wet", "with the surroundings film the coefficient stands for everything that happens at the surface, evaporation too",
+			"use still air or moving air; the column Film coefficient is then for convection alone, and evaporation is calculated")
+	case !e.inAir():
+		c.add(e.At, "Surface", "wet", fmt.Sprintf("evaporation counts in still air and moving air only, not in %s", e.Surface.Name), "leave it blank")
+	case e.Cover == TightWrap || e.Cover == LooseLid:
+		c.add(e.At, "Surface", "wet", fmt.Sprintf("under a %s vapour does not get away, so nothing evaporates", e.Cover.Name), "type dry: wrapped and lidded food counts as dry; wet is for food that lies open")
+	case e.WrapM2KW != nil:
+		c.add(e.At, "Surface", "wet", "beneath a wrap or lid, whose resistance is given, vapour does not get away, so nothing evaporates", "type dry, or leave out Wrap resistance: wet is for food that lies open")
+	}
+}
+
+// activity looks at the water activity of a food.
+func (c *checker) activity(f *Material) {
+	if a := f.WaterActivity; a != nil && !(*a > 0 && *a <= 1) {
+		at := f.At
+		if at.IsZero() {
+			at = c.product.At
+		}
+		c.add(at, "Water activity", fmt.Sprintf("%g", *a), "a water activity is more than 0 and at most 1", "moist food has 0.95 to 1; leave it blank if it was not measured")
+	}
+}
+
+// chilled refuses a wet surface that evaporation alone could freeze, where freezing cannot be calculated.
+func (c *checker) chilled(st *Step, e *Exposure) {
+	if !e.wet() || !e.inAir() {
+		return
+	}
+	for _, f := range c.product.Foods() {
+		if f.EnthalpyJkg != nil {
+			continue
+		}
+		limit := unfrozenC
+		if f.FreezingC != nil {
+			limit = *f.FreezingC
+		}
+		s := newSkin(e, &filmCase{shape: c.product.Shape, size: c.product.Size}, f.WaterActivity, st)
+		for i, t := range append([]float64{0}, e.Medium.TimesS...) {
+			if i > 1 && t > st.DurationS {
+				break
+			}
+			a := s.around(t)
+			wet := moistAir{a.mediumC, a.vapourPa, s.totalPa}.wetBulbC(s.activity)
+			if wet < limit && a.mediumC >= limit {
+				c.add(e.At, "Surface", "wet", fmt.Sprintf("evaporation alone could chill the surface to the wet-bulb temperature, %.1f °C, where %s could freeze", wet, f.Name),
+					"leave Surface blank, which chills more slowly, or give the composition and the freezing point of the food")
+				return
+			}
+		}
+	}
+}
+
+// air asks for dry or wet where air, or what radiates through it, heats the food.
+func (c *checker) air(st *Step, e *Exposure, high, before float64) {
+	if !e.inAir() {
+		return
+	}
+	if e.RadiatingC != nil {
+		high = max(high, *e.RadiatingC)
 	}
 	heats := st.Stage.Heats && high > c.product.StartC || high > before+warmerK
 	if !heats {
@@ -310,15 +413,11 @@ func (c *checker) air(st *Step, e *Exposure, high, before float64) {
 	wetOrDry(&c.found, e)
 }
 
-// wetOrDry refuses air that heats the food where dry was not said.
+// wetOrDry refuses air that heats the food where neither was said.
 func wetOrDry(found *cell.Errors, e *Exposure) {
-	switch {
-	case e.Wet == nil:
+	if e.Wet == nil {
 		found.Add(cell.Error{At: e.At, Field: "Surface", Msg: "air that is warmer than the food needs dry or wet here: a wet surface heats much more slowly",
-			Hint: "type dry only for food that is wrapped, lidded or truly dry"})
-	case *e.Wet:
-		found.Add(cell.Error{At: e.At, Field: "Surface", Typed: "wet", Msg: "heating a wet surface in air cannot be calculated yet, and as a dry one it would come out far too fast",
-			Hint: "use film with a coefficient and temperature from your own measurements, or judge a probe record"})
+			Hint: "type wet for moist food that lies open, and dry only for food that is wrapped, lidded or truly dry"})
 	}
 }
 

@@ -145,7 +145,7 @@ func stated(w float64, source string) func(*filmCase) (float64, string) {
 }
 
 // innerWords tells of the film inside a vessel.
-var innerWords = fmt.Sprintf("; inside the vessel %d W/(m²·K) in series, stated low: textbooks give 50 to 100 for liquids left still (Çengel, Heat Transfer, typical values), and stirring makes it more", innerW)
+var innerWords = fmt.Sprintf("; inside the vessel %g W/(m²·K) in series, stated low: textbooks give 50 to 100 for liquids left still (Çengel, Heat Transfer, typical values), and stirring makes it more", innerW)
 
 // filmUsed tells how an exposure meets the food.
 func (e *Exposure) filmUsed(face *Face, c *filmCase) FilmUsed {

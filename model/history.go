@@ -21,9 +21,11 @@ type FilmUsed struct {
 	Face    *Face   // nil: the whole surface
 	FilmW   float64 // film coefficient, W/(m²·K); +Inf for held
 	TotalW  float64 // with wrap or contact in series
-	Typed   bool    // the film coefficient was typed by the user
-	Source  string  // of a stated coefficient or correlation, with the film conditions
-	Caution string  // e.g. that a stated coefficient is assumed; "" if none
+	LeastW  float64 // smallest and largest FilmW of the step where it followed the surface, and FilmW is that of the start; 0 where it is constant
+	MostW   float64
+	Typed   bool   // the film coefficient was typed by the user
+	Source  string // of a stated coefficient or correlation, with the film conditions
+	Caution string // e.g. that a stated coefficient is assumed; "" if none
 }
 
 // History is the temperature of every place in a food from the start of the chain to its end.

@@ -25,6 +25,8 @@ type marcher interface {
 	firstS() float64
 	// span gives the coldest and hottest temperature of the state, °C.
 	span() (low, high float64)
+	// touches gives the nodes that a skin lies on.
+	touches(k *skin) []int
 	// save and restore keep a copy of the state.
 	save()
 	restore()
@@ -178,6 +180,7 @@ func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
 	st := span.Step
 	cs := &chainStep{durS: st.DurationS, knots: []float64{0}}
 	made := map[*Exposure]*skin{}
+	var worn []wornSkin
 	skins := func(face *Face) *skin {
 		e := &st.Exposure
 		if face != nil {
@@ -193,12 +196,17 @@ func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
 			face = nil
 		}
 		made[e] = k
+		worn = append(worn, wornSkin{k, face})
 		if !e.Surface.NoMedium {
 			cs.group(own.Medium, st.DurationS)
 		}
-		_ = face
 		return k
 	}
+	defer func() {
+		for _, w := range worn {
+			span.Films = append(span.Films, w.used(w.face, f.surfaceRange(w.skin, span.StartS, cs.durS), cs.durS))
+		}
+	}()
 	f.state.surround(skins)
 	f.state.begin(0)
 	f.state.keep(f.track, span.StartS)
@@ -248,6 +256,32 @@ func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
 		span.Reached = &reached
 	}
 	return cs
+}
+
+// wornSkin is a skin and the face that it is told of.
+type wornSkin struct {
+	*skin
+	face *Face
+}
+
+// surfaceRange tells what the temperature beneath a skin did in a step of durS seconds.
+func (f *marched) surfaceRange(k *skin, startS, durS float64) surfaceRange {
+	spots := f.state.touches(k)
+	r := surfaceRange{lowC: math.Inf(1), highC: math.Inf(-1)}
+	first := true
+	for i, t := range f.track.times {
+		if t < startS || t > startS+durS {
+			continue
+		}
+		c, _ := f.track.row(i)
+		for _, j := range spots {
+			r.lowC, r.highC = min(r.lowC, c[j]), max(r.highC, c[j])
+		}
+		if len(spots) > 0 && (first || t == startS) { // of two instants at a change the one after it
+			r.startC, first = c[spots[0]], false
+		}
+	}
+	return r
 }
 
 // missing is by how much the slowest place falls short of a temperature at t, K; below 0 it is past it.

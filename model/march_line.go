@@ -387,3 +387,12 @@ func (m *lineMarch) restore() {
 	copy(m.h, m.kept[:n])
 	copy(m.rate, m.kept[n:])
 }
+
+func (m *lineMarch) touches(k *skin) (nodes []int) {
+	for side, s := range m.skins {
+		if s == k {
+			nodes = append(nodes, (len(m.x)-1)*side)
+		}
+	}
+	return nodes
+}

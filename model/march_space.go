@@ -568,3 +568,14 @@ func (m *spaceMesh) pieces(x coord, c []float64) float64 {
 		})
 	})
 }
+
+func (m *spaceMarch) touches(k *skin) (nodes []int) {
+	for a := range m.skins {
+		for side, s := range m.skins[a] {
+			if s == k {
+				nodes = append(nodes, m.spots[a][side]...)
+			}
+		}
+	}
+	return nodes
+}

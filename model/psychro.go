@@ -10,6 +10,9 @@ const (
 	dryAirCp    = 1006.0 // J/(kg·K), dry air from -40 to 100 °C within 1 % (any textbook)
 )
 
+// moistCp is the specific heat of moist air by the kg of dry air in it, J/(kg·K): that of vapour is 1860 J/(kg·K) (any textbook).
+func moistCp(ratio float64) float64 { return dryAirCp + 1860*ratio }
+
 // lewisFactor is Le^(2/3), by which heat transfer runs ahead of mass transfer (Chilton & Colburn 1934).
 var lewisFactor = math.Pow(lewis, 2.0/3)
 
@@ -101,14 +104,17 @@ func dewC(vapourPa float64) float64 {
 	return satC(vapourPa)
 }
 
-// wetBulbC is the temperature that a wet surface takes in air by convection and evaporation alone, with nothing conducted, °C:
-// cp Le^(2/3) (air - wet) = latent heat × (humidity ratio at the surface - that of the air).
-func wetBulbC(airC, vapourPa, totalPa float64) float64 {
-	w := humidityRatio(vapourPa, totalPa)
-	lo, hi := -100.0, airC
+// moistAir is air with vapour in it.
+type moistAir struct{ tC, vapourPa, totalPa float64 }
+
+// wetBulbC is the temperature that a wet surface of a water activity takes by convection and evaporation alone, with nothing conducted, °C:
+// cp Le^(2/3) (air - wet), cp of the moist air, = latent heat × (humidity ratio at the surface - that of the air).
+func (m moistAir) wetBulbC(activity float64) float64 {
+	w := humidityRatio(m.vapourPa, m.totalPa)
+	lo, hi := -100.0, max(m.tC, dewC(m.vapourPa))+1
 	for range 60 {
 		t := (lo + hi) / 2
-		if dryAirCp*lewisFactor*(airC-t) > latentJkg(t)*(humidityRatio(satPa(t), totalPa)-w) {
+		if moistCp(w)*lewisFactor*(m.tC-t) > latentJkg(t)*(humidityRatio(activity*satPa(t), m.totalPa)-w) {
 			lo = t
 		} else {
 			hi = t

@@ -27,6 +27,7 @@ type skin struct {
 	condenses bool     // vapour condenses below the dew point, wet or dry
 	slowHeats bool     // of two forms of the law of evaporation the one that leaves the food colder; else the hotter
 	activity  float64  // of the water at a wet surface
+	given     bool     // the food's activity is known
 
 	law   func(surfaceC, tauS float64) (w, slope float64) // stands for everything (tests)
 	now   around                                          // of a medium that stays as it is
@@ -39,6 +40,7 @@ type skin struct {
 type around struct {
 	mediumC  float64
 	ratio    float64 // humidity ratio of the air
+	massWK   float64 // mass that evaporates by the film and the drive, K·kg/J: 1/(cp Le^(2/3))
 	vapourPa float64
 	dewC     float64 // steam with air only
 	uchidaW  float64 // film of condensing steam with air, W/(m²·K)
@@ -118,7 +120,7 @@ func (s *skin) wets(e *Exposure, aw *float64) {
 		s.activity = activityHeats
 	}
 	if aw != nil {
-		s.activity = *aw
+		s.activity, s.given = *aw, true
 	}
 }
 
@@ -160,7 +162,7 @@ func (e *Exposure) seriesM2KW(c *filmCase) float64 {
 
 // innerW is the film between a vessel's wall and a liquid in it that is stirred, W/(m²·K): the low end of 50 to 100 for liquids that only
 // move by themselves (Çengel, Heat Transfer, typical values); stirring makes it higher.
-const innerW = 50
+const innerW = 50.0
 
 // innerFilm tells whether the film inside a vessel counts: not where the user typed the film, which stands for everything, nor where
 // the liquid itself lies open and wet.
@@ -177,6 +179,7 @@ func (s *skin) around(tau float64) around {
 	}
 	a.vapourPa = vapourPa(a.mediumC, at(&s.humidity, tau), s.totalPa)
 	a.ratio = humidityRatio(a.vapourPa, s.totalPa)
+	a.massWK = 1 / (moistCp(a.ratio) * lewisFactor)
 	if s.steamAir {
 		a.dewC = dewC(a.vapourPa)
 		a.uchidaW = min(uchidaW(a.ratio), steamW)
@@ -221,7 +224,7 @@ func (s *skin) outer(outerC float64, a *around) float64 {
 		w += s.radiationW(outerC)
 	}
 	if s.condenses {
-		w -= h / (dryAirCp * lewisFactor) * s.drive(outerC, a) * latentJkg(outerC)
+		w -= h * a.massWK * s.drive(outerC, a) * latentJkg(outerC)
 	}
 	return w
 }
@@ -323,11 +326,14 @@ func (s *skin) exact(surfaceC, tau float64) (w, slope float64) {
 	case s.linear:
 		return s.totalW * (s.mediumC(tau) - surfaceC), -s.totalW
 	case s.table != nil:
-		return s.sloped(surfaceC, &s.now, 1e-3)
+		return s.sloped(surfaceC, &s.now, slopeK)
 	}
 	a := s.around(tau)
-	return s.sloped(surfaceC, &a, 1e-3)
+	return s.sloped(surfaceC, &a, slopeK)
 }
+
+// slopeK is half of the difference that a slope is taken over, K.
+const slopeK = 1e-3
 
 // sloped takes the slope from two temperatures d K to each side.
 func (s *skin) sloped(surfaceC float64, a *around, d float64) (w, slope float64) {
