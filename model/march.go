@@ -18,7 +18,8 @@ type marcher interface {
 	begin(tau float64)
 	// try makes a step of length d from tau and estimates its error, K; the state changes only by accept.
 	try(tau, d float64) float64
-	accept()
+	// accept makes the last try the state and writes it into a track, with what is needed of the way to it.
+	accept(k *track, t float64)
 	// keep writes the state into a track.
 	keep(k *track, t float64)
 	// firstS is a length for the first step after a change, s.
@@ -61,7 +62,7 @@ type effort struct {
 // axis, and times that go with them about six times.
 func (s *solver) rougher(e effort) effort {
 	if s.polynomial() {
-		return effort{e.more, e.tolK * 15, true}
+		return effort{e.more, e.tolK * 6, true}
 	}
 	return effort{e.more, e.tolK * 6, true}
 }
@@ -73,8 +74,8 @@ const (
 	polynomialsWorse = 3.5
 )
 
-// polynomial tells whether the march has polynomials in space: smooth fields of more than one direction.
-func (s *solver) polynomial() bool { return s.used > 1 && !s.front }
+// polynomial tells whether the march has polynomials in space: smooth fields.
+func (s *solver) polynomial() bool { return s.used > 0 && !s.front && s.product.Shape != LayeredSlab }
 
 // marchGoalK is the error that a march is to keep, K.
 const marchGoalK = 0.019
@@ -84,7 +85,10 @@ func (s *solver) march() (*History, error) {
 	e := effort{more: 1, tolK: 2e-3}
 	worse := float64(volumesWorse)
 	if s.polynomial() {
-		e.tolK, worse = 3e-3, polynomialsWorse
+		e.tolK, worse = 8e-3, polynomialsWorse
+		if s.used == 3 {
+			e.more = 1.1
+		}
 	}
 	for tries := 0; ; tries++ {
 		h, fine := s.marchOnce(e)
@@ -233,19 +237,18 @@ func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
 			d = use * max(0.1, min(0.5, 0.9*math.Cbrt(tolK/err)))
 			continue
 		}
-		f.state.accept()
-		from := tau
+		from, kept := tau, len(f.track.times)
 		if tau += use; use == end-from {
 			tau = end
 		}
-		f.state.keep(f.track, span.StartS+tau)
+		f.state.accept(f.track, span.StartS+tau)
 		if grow := max(0.2, min(2.5, 0.9*math.Cbrt(tolK/err))); grow >= 1 {
 			d = max(d, use*grow)
 		} else {
 			d = use * grow
 		}
 		if st.UntilC != nil && f.missing(span.StartS+tau, *st.UntilC, st.Stage.Heats) <= 0 {
-			cs.durS = f.arrive(*st.UntilC, st.Stage.Heats, span.StartS, from)
+			cs.durS = f.arrive(*st.UntilC, st.Stage.Heats, span.StartS, from, kept)
 			reached := true
 			span.Reached = &reached
 			return cs
@@ -293,9 +296,9 @@ func (f *marched) missing(t, goal float64, heats bool) float64 {
 	return high.c - goal
 }
 
-// arrive finds when, between the last two instants of the track, the slowest place reached a temperature, and steps there again; from is
-// where the last step began, s into the chain's step that began at start.
-func (f *marched) arrive(goal float64, heats bool, start, from float64) float64 {
+// arrive finds when, in the last step of the march, the slowest place reached a temperature, and steps there again; from is where that step
+// began, s into the chain's step that began at start, when the track had kept instants.
+func (f *marched) arrive(goal float64, heats bool, start, from float64, kept int) float64 {
 	k := f.track
 	lo, hi := start+from, k.times[len(k.times)-1]
 	before := f.missing(lo, goal, heats)
@@ -308,11 +311,10 @@ func (f *marched) arrive(goal float64, heats bool, start, from float64) float64 
 	}
 	for try := 0; ; try++ { // a step to there lands a little off the cubic between the two instants
 		hi = max(hi, start+1e-3) // a step of no length cannot be drawn or judged
-		k.cut(len(k.times) - 1)
+		k.cut(kept)
 		f.state.restore()
 		f.state.try(from, hi-start-from)
-		f.state.accept()
-		f.state.keep(k, hi)
+		f.state.accept(k, hi)
 		left := f.missing(hi, goal, heats)
 		if math.Abs(left) < 1e-6 || try == 4 || before <= left {
 			return hi - start
@@ -427,7 +429,7 @@ func (s *solver) newMarched(e effort) *marched {
 	switch {
 	case s.product.Shape == Spheroid:
 		s.layRound(f, laws[0], e)
-	case s.used > 1:
+	case s.used > 1 || s.polynomial():
 		s.laySpace(f, laws[0], e)
 	default:
 		s.layLine(f, laws, e)
@@ -459,9 +461,10 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 	f.body = newBody(body{kinds: kinds, radii: s.radii, pieces: true}, nd)
 }
 
-// laySpace lays out a body of two or three axes.
+// laySpace lays out a body of two or three axes, or of one without a front.
 func (s *solver) laySpace(f *marched, l *law, e effort) {
 	var axes [3]*spaceAxis
+	var lines [3]*axis
 	nd := &nodes{x: [3][]float64{{0}, {0}, {0}}, phi: [3][]float64{{1}, {1}, {1}}}
 	front := s.front
 	for a := range axes {
@@ -474,10 +477,16 @@ func (s *solver) laySpace(f *marched, l *law, e effort) {
 			nd.x[a] = axes[a].x
 			continue
 		}
-		axes[a] = smoothAxis(s.kinds[a], s.radii[a], s.smoothNodes(a, e), s.faces[a])
+		n := s.smoothNodes(a, e)
+		axes[a] = smoothAxis(s.kinds[a], s.radii[a], n, s.faces[a])
 		axes[a].bodyNodes(nd, a)
+		lines[a] = &axis{base: baseOf(s.kinds[a], n), radiusM: s.radii[a]}
 	}
-	f.state, f.mesh = newSpaceMarch(axes, l, s.product.StartC), newSpaceMesh(axes)
+	march := newSpaceMarch(axes, l, s.product.StartC)
+	f.state, f.mesh = march, newSpaceMesh(axes)
+	if !front {
+		f.state = newModesMarch(march, lines, &s.tmp.call, e.tolK/4)
+	}
 	f.body = newBody(body{kinds: s.kinds, radii: s.radii, pieces: front}, nd)
 }
 

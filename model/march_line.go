@@ -322,7 +322,7 @@ func (m *lineMarch) try(tau, d float64) float64 {
 }
 
 // accept makes the last try the state.
-func (m *lineMarch) accept() {
+func (m *lineMarch) accept(k *track, t float64) {
 	m.h, m.h2 = m.h2, m.h
 	for i := range m.rate {
 		m.rate[i] = m.f2[i] / m.w[i]
@@ -333,6 +333,7 @@ func (m *lineMarch) accept() {
 		}
 	}
 	m.fresh = false
+	m.keep(k, t)
 }
 
 // keep writes the state into a track.

@@ -295,9 +295,10 @@ func (m *spaceMarch) try(tau, d float64) float64 {
 	return worst
 }
 
-func (m *spaceMarch) accept() {
+func (m *spaceMarch) accept(k *track, t float64) {
 	m.h, m.y1 = m.y1, m.h
 	m.f0, m.f = m.f, m.f0
+	m.keep(k, t)
 }
 
 func (m *spaceMarch) keep(k *track, t float64) {

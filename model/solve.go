@@ -131,7 +131,7 @@ func (s *solver) layOut() {
 		for a := 0; a < s.used; a++ {
 			s.settle = min(s.settle, settleFo*s.radii[a]*s.radii[a]/alpha)
 		}
-		if marches && s.polynomial() {
+		if marches && s.polynomial() && s.used > 1 {
 			s.settle = s.marchSettle(alpha)
 		}
 	}
