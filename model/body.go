@@ -17,6 +17,8 @@ type body struct {
 	order []int // nodes from the centre outwards
 	rank  []int // by node: its place in order
 	buf   []float64
+	// pieces says that between nodes nothing is colder or hotter than both: the extremes stand at nodes.
+	pieces bool
 }
 
 func newBody(of body, nd *nodes) *body {
@@ -130,6 +132,9 @@ func (b *body) extremes(s snapshot) (low, high extreme) {
 	}
 	s.grid(b.buf)
 	lo, hi := b.lowest()
+	if b.pieces {
+		return extreme{b.buf[lo], b.node(lo)}, extreme{b.buf[hi], b.node(hi)}
+	}
 	reach := rivalShare * (b.buf[hi] - b.buf[lo])
 	low, high = b.polish(s, lo, 1), b.polish(s, hi, -1)
 	if i := b.rival(lo, 1, reach, low.c); i >= 0 {

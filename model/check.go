@@ -158,10 +158,6 @@ func (c *checker) foodAt(f *Material, row cell.Ref) {
 	if f.SetForm != "" {
 		instead = "once it is set, the built-in food is " + f.SetForm + "; else " + instead
 	}
-	if f.Table {
-		c.add(f.At, "At temperature", "", fmt.Sprintf("%s has properties at several temperatures, which cannot be calculated yet", f.Name),
-			"keep one row, at the middle of the temperatures that matter, on the slow side")
-	}
 	if p.Shape == Stirred {
 		c.mixes()
 		return
@@ -172,9 +168,11 @@ func (c *checker) foodAt(f *Material, row cell.Ref) {
 	case f.Flow == FlowsThick && p.Shape == LayeredSlab: // of other shapes a second run takes it as well mixed
 		c.add(at, field, typed(f.Flow), says+"may mix by itself while it is hot; conduction alone does not describe that, and a layer cannot be taken as well mixed", instead)
 	}
+	if f.freezes() {
+		return
+	}
 	if f.FreezingC != nil && p.StartC < *f.FreezingC || f.FreezingC == nil && p.StartC < unfrozenC {
-		c.add(p.At, "Start temperature", fmt.Sprintf("%g °C", p.StartC), "the food starts frozen, and melting cannot be calculated yet",
-			"judge a probe record, or start from the thawed food")
+		c.add(p.At, "Start temperature", fmt.Sprintf("%g °C", p.StartC), "the food starts frozen, and "+f.noIce(), iceNeeds)
 	}
 }
 
@@ -235,9 +233,13 @@ func reach(p *Product) [3]float64 {
 }
 
 func (c *checker) step(st *Step) {
-	switch st.Stage {
-	case Freeze, Thaw:
-		c.add(st.At, "Stage", st.Stage.Name, "freezing and thawing cannot be calculated yet", "judge a probe record of this step")
+	if st.Stage == Freeze || st.Stage == Thaw {
+		for _, f := range c.product.Foods() {
+			if !f.freezes() {
+				c.add(st.At, "Stage", st.Stage.Name, f.noIce(), iceNeeds)
+				break
+			}
+		}
 	}
 	if !(st.DurationS > 0) || math.IsInf(st.DurationS, 0) {
 		c.add(st.At, "Duration", "", "the step needs a duration above 0", "")
@@ -440,12 +442,26 @@ func (c *checker) coldFor(f *Material, st *Step, e *Exposure, field string, low 
 		}
 		return
 	}
-	if low >= *f.FreezingC || raises(st.Stage) {
+	if low >= *f.FreezingC || f.freezes() || raises(st.Stage) {
 		return
 	}
-	c.add(e.At, field, typed, fmt.Sprintf("the food could freeze here (its freezing point is %g °C), which cannot be calculated yet", *f.FreezingC), "judge a probe record of this step")
+	c.add(e.At, field, typed, fmt.Sprintf("the food could freeze here (its freezing point is %g °C), and %s", *f.FreezingC, f.noIce()), iceNeeds)
 }
 
 // raises tells whether a medium below the freezing point may be raised to it: only where the food is to get colder,
 // so that every temperature is then at or above the true one until the place itself freezes (comparison principle).
 func raises(s *Stage) bool { return s == Cool || s == Rest || s == HoldCold || s == Store }
+
+// freezes tells whether the food is calculated through freezing and melting.
+func (m *Material) freezes() bool { return m.FreezingC != nil && m.EnthalpyJkg != nil }
+
+// noIce says why a food is not calculated through freezing and melting.
+func (m *Material) noIce() string {
+	if m.FreezingC == nil {
+		return fmt.Sprintf("the freezing point of %s is not known, so its freezing and melting cannot be calculated", m.Name)
+	}
+	return fmt.Sprintf("how much ice forms in %s is not known from typed properties, so its freezing and melting cannot be calculated", m.Name)
+}
+
+// iceNeeds is what freezing and melting need.
+const iceNeeds = "give the food's composition and its freezing point in a row of Foods, or judge a probe record of this step"

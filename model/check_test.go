@@ -57,7 +57,6 @@ func TestCheckRefuses(t *testing.T) {
 		{"spheroid without a diameter", func(p *Product, _ []Step) { p.Shape = Spheroid }, "Products row 2", "Diameter", "spheroid needs Diameter"},
 		{"no thickness", func(p *Product, _ []Step) { p.Size.ThicknessM = 0 }, "Products row 2", "Thickness", "needs Thickness"},
 		{"no food", func(p *Product, _ []Step) { p.Food = nil }, "Products row 2", "Food", "no food"},
-		{"properties that follow the temperature", func(p *Product, _ []Step) { p.Food.Table = true }, "Foods row 7", "At temperature", "several temperatures"},
 		{"liquid", func(p *Product, _ []Step) { p.Food.Flow = FlowsYes }, "Foods row 7", "Flows", "mixes by itself"},
 		{"thick liquid as a layer", func(p *Product, _ []Step) {
 			p.Food.Flow = FlowsThick
@@ -88,8 +87,8 @@ func TestCheckRefuses(t *testing.T) {
 		{"point outside", func(p *Product, _ []Step) {
 			p.Points = []Point{{At: cell.Ref{Sheet: "Points", Row: 4}, Name: "probe", Place: Place{UpM: 0.03}}}
 		}, "Points row 4", "Up", "outside the food"},
-		{"freezing stage", func(_ *Product, s []Step) { s[1].Stage = Freeze }, "Steps row 3", "Stage", "freezing and thawing"},
-		{"thawing stage", func(_ *Product, s []Step) { s[0].Stage = Thaw }, "Steps row 2", "Stage", "freezing and thawing"},
+		{"freezing stage", func(_ *Product, s []Step) { s[1].Stage = Freeze }, "Steps row 3", "Stage", "freezing and melting"},
+		{"thawing stage", func(_ *Product, s []Step) { s[0].Stage = Thaw }, "Steps row 2", "Stage", "freezing and melting"},
 		{"radiation beside a film that stands for everything", func(_ *Product, s []Step) { s[0].RadiatingC = ptr(170.0) }, "Steps row 2", "Radiating temperature", "still air or moving air"},
 		{"emissivity beside a film that stands for everything", func(_ *Product, s []Step) { s[0].Emissivity = ptr(0.9) }, "Steps row 2", "Emissivity", "still air or moving air"},
 		{"radiation in water", func(_ *Product, s []Step) {

@@ -15,6 +15,9 @@ var goalK = [4]float64{0, 0.0048, 0.0095, 0.019}
 // settleS is the time after a change of surroundings from which the error is estimated unless told otherwise, s; less for small foods.
 const settleS = 30
 
+// settleFo is the Fourier number of the thinnest half axis after which a small food has settled.
+const settleFo = 0.02
+
 // Solve predicts the history of a product through its steps. Conduction with constant properties in each step is solved
 // without time steps: on each axis the field is a sum of polynomials whose modes decay exponentially, media that are constant
 // or straight lines in time are integrated exactly, and the field is carried from step to step by projection. The only error is
@@ -32,6 +35,9 @@ func Solve(p Product, steps []Step, o Options) (*History, error) {
 	s := &solver{product: &p, steps: steps, options: o, tmp: scratches.Get().(*scratch)}
 	defer scratches.Put(s.tmp)
 	s.layOut()
+	if s.marches() {
+		return s.march()
+	}
 	for more := 0; ; more++ {
 		h := s.run(more)
 		if len(s.refused) > 0 {
@@ -69,6 +75,8 @@ type solver struct {
 	main    field
 	tmp     *scratch    // for what does not outlive the solution
 	refused cell.Errors // found while solving
+	laws    []*law      // of the foods, by layer; made when a march needs them
+	front   bool        // marched, and any place may freeze or melt
 }
 
 // layOut finds the axes of the product.
@@ -114,12 +122,17 @@ func (s *solver) layOut() {
 			s.kinds[0] = planeFull
 		}
 	}
+	marches := s.marches()
+	s.front = marches && s.mayFreeze()
 	q := s.props(50)
 	alpha := q.KWmK / (q.RhoKgM3 * q.CJkgK)
 	if s.settle = s.options.ErrorFromS; s.settle == 0 {
 		s.settle = settleS
 		for a := 0; a < s.used; a++ {
-			s.settle = min(s.settle, 0.02*s.radii[a]*s.radii[a]/alpha)
+			s.settle = min(s.settle, settleFo*s.radii[a]*s.radii[a]/alpha)
+		}
+		if marches && s.polynomial() {
+			s.settle = s.marchSettle(alpha)
 		}
 	}
 	for i := range s.steps {
@@ -578,7 +591,7 @@ func (m *Course) meanC(durS float64) float64 {
 // raised gives a medium with everything below the freezing point raised to it, where the stage allows that, and notes it in span.
 func (s *solver) raised(st *Step, e *Exposure, span *Span) Course {
 	m := e.Medium
-	tf := s.product.freezingC()
+	tf := s.product.raisedTo()
 	if tf == nil || !raises(st.Stage) {
 		return m
 	}
@@ -623,6 +636,7 @@ func sameCourse(a, b *Course) bool {
 func sameExposure(a, b *Exposure) bool {
 	same := func(x, y *float64) bool { return x == nil && y == nil || x != nil && y != nil && *x == *y }
 	return a == b || a.Surface == b.Surface && same(a.FilmW, b.FilmW) && same(a.AirMS, b.AirMS) && same(a.WrapM2KW, b.WrapM2KW) &&
+		same(a.RadiatingC, b.RadiatingC) && same(a.Emissivity, b.Emissivity) && same(a.RH, b.RH) && a.wet() == b.wet() && slices.Equal(a.Medium.RH, b.Medium.RH) &&
 		sameCourse(&a.Medium, &b.Medium)
 }
 

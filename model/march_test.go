@@ -1,0 +1,165 @@
+package model
+
+import (
+	"encoding/json"
+	"math"
+	"os"
+	"path/filepath"
+	"slices"
+	"strings"
+	"testing"
+)
+
+// problem is a reference problem that is marched: its inputs stand in testdata/published/solutions, with how it was solved twice.
+type problem struct {
+	id      string
+	product Product
+	steps   []Step
+	points  map[string]Place
+	allowK  float64
+	edgeK   float64
+}
+
+func filmTo(w, c float64) Exposure {
+	return Exposure{Surface: Film, FilmW: &w, Medium: Course{TimesS: []float64{0}, C: []float64{c}}}
+}
+
+// freezingFood is the food of problem H: an enthalpy law that is given as a formula.
+func freezingFood() *Material {
+	const rho, cu, cf, lw, tf, ku, kf = 1050, 3500, 1900, 0.68 * 333500, -1.1, 0.48, 1.55
+	point := tf
+	return &Material{Name: "test food", Source: "input of the problem", FreezingC: &point, Composed: true, LowC: -60, HighC: 100,
+		Props: func(c float64) Properties {
+			if c >= tf {
+				return Properties{ku, rho, cu}
+			}
+			return Properties{ku + (kf-ku)*(1-tf/c), rho, cf - lw*tf/(c*c)}
+		},
+		EnthalpyJkg: func(c float64) float64 {
+			if c >= tf {
+				return cu * (c - tf)
+			}
+			return cf*(c-tf) - lw*(1-tf/c)
+		}}
+}
+
+// wetRadiating is the surface of problem I with its own law of mass transfer.
+func wetRadiating(filmW, mediumC, radiantC, rh, km float64) Exposure {
+	const emissivity, aw, latent, sigma = 0.9, 0.98, 2.4e6, 5.670374419e-8
+	sat := func(c float64) float64 { return 610.94 * math.Exp(17.625*c/(c+243.04)) }
+	slope := func(c float64) float64 { return sat(c) * 17.625 * 243.04 / (c + 243.04) / (c + 243.04) }
+	kelvin4 := func(c float64) float64 { return math.Pow(c+273.15, 4) }
+	vapour := rh * sat(mediumC)
+	e := filmTo(filmW, mediumC)
+	e.Surface = &Surface{Name: "test surface", law: func(c, _ float64) (float64, float64) {
+		return filmW*(mediumC-c) + emissivity*sigma*(kelvin4(radiantC)-kelvin4(c)) - km*latent*(aw*sat(c)-vapour),
+			-filmW - 4*emissivity*sigma*math.Pow(c+273.15, 3) - km*latent*aw*slope(c)
+	}}
+	return e
+}
+
+func problems() []problem {
+	up := func(names ...any) map[string]Place {
+		m := map[string]Place{}
+		for i := 0; i < len(names); i += 2 {
+			m[names[i].(string)] = Place{UpM: names[i+1].(float64)}
+		}
+		return m
+	}
+	linear := &Material{Name: "test food", Source: "input of the problem", Table: true, LowC: -50, HighC: 200, Props: func(c float64) Properties {
+		return Properties{0.46 + 0.0014*c, 1000, 3700 + 1.5*c}
+	}}
+	constant := &Material{Name: "test food", Source: "input of the problem", Props: func(float64) Properties { return Properties{0.48, 1060, 3600} }}
+	return []problem{
+		{"D", Product{Name: "brick", Shape: Brick, Size: Size{ThicknessM: 0.09, WidthM: 0.18, LengthM: 0.3}, Food: linear, StartC: 5},
+			[]Step{{Name: "cook", Stage: Cook, DurationS: 3600, Exposure: filmTo(25, 160)}, {Name: "rest", Stage: Rest, DurationS: 900, Exposure: filmTo(8, 22)}, {Name: "chill", Stage: Cool, DurationS: 14400, Exposure: filmTo(30, 2)}},
+			map[string]Place{"centre": {}, "face_x": {AlongM: 0.15}, "face_y": {AcrossM: 0.09}, "face_z": {UpM: 0.045}, "corner": {0.045, 0.09, 0.15}, "half": {0.0225, 0.045, 0.075}}, 0.02, 0.03},
+		{"H", Product{Name: "slab", Shape: Slab, Size: Size{ThicknessM: 0.05}, Food: freezingFood(), StartC: 20},
+			[]Step{{Name: "freeze", Stage: Freeze, DurationS: 10800, Exposure: filmTo(40, -30)}}, up("centre", 0.0, "quarter", 0.0125, "surface", 0.025), 0.02, 0.02},
+		{"I", Product{Name: "slab", Shape: Slab, Size: Size{ThicknessM: 0.03}, Food: constant, StartC: 5},
+			[]Step{{Name: "humid oven", Stage: Cook, DurationS: 2700, Exposure: wetRadiating(25, 160, 170, 0.03, 1.525513e-07)},
+				{Name: "rest", Stage: Rest, DurationS: 600, Exposure: wetRadiating(8, 22, 22, 0.5, 4.88164e-08)},
+				{Name: "chill", Stage: Cool, DurationS: 9000, Exposure: wetRadiating(20, 2, 2, 0.85, 1.22041e-07)}}, up("centre", 0.0, "quarter", 0.0075, "surface", 0.015), 0.02, 0.02},
+	}
+}
+
+// solved holds an independent solution of a problem.
+type solved struct {
+	Reference struct {
+		Columns []string
+		Rows    [][]any
+	}
+}
+
+func solutionOf(t testing.TB, id string) solved {
+	raw, err := os.ReadFile(filepath.Join("..", "testdata", "published", "solutions", id+".json"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	var s solved
+	if err := json.Unmarshal(raw, &s); err != nil {
+		t.Fatal(err)
+	}
+	return s
+}
+
+// offK gives the largest difference of a history from a solution, and reports each above what is allowed.
+func (p *problem) offK(t testing.TB, h *History, sol solved) float64 {
+	s := h.Sample(30)
+	worst, compared := 0.0, 0
+	for _, row := range sol.Reference.Rows {
+		at := row[0].(float64)
+		i := slices.IndexFunc(s.TimesS, func(x float64) bool { return math.Abs(x-at) < 1e-6 })
+		for c, column := range sol.Reference.Columns {
+			name, isC := strings.CutSuffix(column, "_C")
+			if !isC {
+				continue
+			}
+			var got float64
+			allow := p.allowK
+			switch name {
+			case "volume_mean":
+				got = s.Mean[i]
+			case "coldest_T":
+				got, allow = s.Coldest[i], p.edgeK
+			case "hottest_T":
+				got, allow = s.Hottest[i], p.edgeK
+			default:
+				place, ok := p.points[name]
+				if !ok {
+					t.Fatalf("no place %s", name)
+				}
+				got = h.At(place, at)
+			}
+			off := math.Abs(got - row[c].(float64))
+			worst = max(worst, off)
+			compared++
+			if off > allow {
+				t.Errorf("%s at %g s: %s %.4f, want %.4f", p.id, at, name, got, row[c])
+			}
+		}
+	}
+	if compared < 60 {
+		t.Fatalf("only %d figures compared", compared)
+	}
+	return worst
+}
+
+func TestMarchedReferenceProblems(t *testing.T) {
+	for _, p := range problems() {
+		t.Run(p.id, func(t *testing.T) {
+			h, err := Solve(p.product, p.steps, Options{})
+			if err != nil {
+				t.Fatal(err)
+			}
+			worst := p.offK(t, h, solutionOf(t, p.id))
+			t.Logf("largest difference %.4f K, stated error %.4f K, %s, %d instants", worst, h.ErrorK, h.Method, len(h.field.(*marched).track.times))
+			if worst > 2*h.ErrorK+0.002 {
+				t.Errorf("stated error %.4f K, true %.4f K", h.ErrorK, worst)
+			}
+			if h.ErrorK > p.allowK {
+				t.Errorf("stated error %.4f K, promised %.4f K", h.ErrorK, p.allowK)
+			}
+		})
+	}
+}

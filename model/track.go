@@ -1,0 +1,103 @@
+package model
+
+import (
+	"math"
+	"sort"
+)
+
+// track keeps the temperatures of n nodes at rising instants, with their slopes in time: cubics through both stand between. A change of
+// surroundings stands twice, with the slopes before and after it.
+type track struct {
+	n     int
+	times []float64
+	data  []float64 // by instant: n temperatures, °C, then n slopes, K/s
+	last  int       // the interval that was looked at last
+}
+
+// add appends an instant and gives the slices to fill.
+func (k *track) add(t float64) (c, slope []float64) {
+	k.times = append(k.times, t)
+	at := len(k.data)
+	k.data = append(k.data, make([]float64, 2*k.n)...)
+	return k.data[at : at+k.n], k.data[at+k.n : at+2*k.n]
+}
+
+// cut takes back everything after the first m instants.
+func (k *track) cut(m int) {
+	k.times, k.data, k.last = k.times[:m], k.data[:2*k.n*m], 0
+}
+
+// row gives what was kept of instant i.
+func (k *track) row(i int) (c, slope []float64) {
+	at := 2 * k.n * i
+	return k.data[at : at+k.n], k.data[at+k.n : at+2*k.n]
+}
+
+// between holds the weights of the two instants around one.
+type between struct {
+	i              int
+	c0, s0, c1, s1 float64
+}
+
+// find gives the weights for an instant; at a change the value before it.
+func (k *track) find(t float64) between {
+	i := k.last
+	if i+1 >= len(k.times) || t <= k.times[i] || t > k.times[i+1] {
+		i = sort.SearchFloat64s(k.times, t) - 1
+		i = max(0, min(i, len(k.times)-2))
+		k.last = i
+	}
+	t0, t1 := k.times[i], k.times[i+1]
+	d := t1 - t0
+	if d <= 0 {
+		return between{i: i, c0: 1}
+	}
+	x := max(0, min(1, (t-t0)/d))
+	y := x * x
+	return between{i, 1 + y*(2*x-3), d * x * (1 + x*(x-2)), y * (3 - 2*x), d * y * (x - 1)}
+}
+
+// node gives the temperature of a node.
+func (k *track) node(b between, j int) float64 {
+	a := k.data[2*k.n*b.i:]
+	return b.c0*a[j] + b.s0*a[k.n+j] + b.c1*a[2*k.n+j] + b.s1*a[3*k.n+j]
+}
+
+// all fills out with the temperatures of all nodes.
+func (k *track) all(b between, out []float64) {
+	a := k.data[2*k.n*b.i : 2*k.n*(b.i+2)]
+	n := k.n
+	c0, s0, c1, s1 := a[:n], a[n:2*n], a[2*n:3*n], a[3*n:4*n]
+	for j := range out[:n] {
+		out[j] = b.c0*c0[j] + b.s0*s0[j] + b.c1*c1[j] + b.s1*s1[j]
+	}
+}
+
+// reach gives the coldest and hottest temperature that was kept between two instants.
+func (k *track) reach(from, to float64) (low, high float64) {
+	low, high = math.Inf(1), math.Inf(-1)
+	for i, t := range k.times {
+		if t >= from && t <= to {
+			c, _ := k.row(i)
+			for _, x := range c {
+				low, high = min(low, x), max(high, x)
+			}
+		}
+	}
+	return low, high
+}
+
+// sum gives the sum of the temperatures of all nodes by weight.
+func (k *track) sum(b between, w []float64) float64 {
+	a := k.data[2*k.n*b.i : 2*k.n*(b.i+2)]
+	n := len(w)
+	c0, s0, c1, s1 := a[:n], a[k.n:][:n], a[2*k.n:][:n], a[3*k.n:][:n]
+	var x, y, z, v float64
+	for j, w := range w {
+		x += w * c0[j]
+		y += w * s0[j]
+		z += w * c1[j]
+		v += w * s1[j]
+	}
+	return b.c0*x + b.s0*y + b.c1*z + b.s1*v
+}
