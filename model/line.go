@@ -245,6 +245,10 @@ func (w *lineSampler) follow() (low, high extreme, ok bool) {
 	if low.c > high.c {
 		low, high = high, low
 	}
+	if k.turns == 1 && high.c-low.c <= flatK { // faces that meet the same: the underside, as among nodes
+		low = extreme{w.now.first, coord{xs[0]}}
+		high = low
+	}
 	if k.turns == 0 {
 		return low, high, high.c-low.c > clearK
 	}
