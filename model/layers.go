@@ -103,14 +103,16 @@ func (p *part) outer(xi float64) float64 {
 	return (p.lo + p.hi + xi*(p.hi-p.lo)) / 2
 }
 
-// below tells whether x lies below the joint c, or on it where the part below owns it: the one nearer the centre, of two as near the upper.
-func (s *stack) below(x, c float64) bool {
-	bond := bondM / s.halfM
+// below tells whether a place x belongs to what lies below the joint c, within bond of which it lies on the joint: a place on a joint belongs
+// to the layer nearer the centre, of two as near to the upper.
+func below(x, c, bond float64) bool {
 	if c > bond {
 		return x <= c+bond
 	}
 	return x < c-bond
 }
+
+func (s *stack) below(x, c float64) bool { return below(x, c, bondM/s.halfM) }
 
 // partAt gives the part that a place belongs to.
 func (s *stack) partAt(x float64) int {

@@ -23,6 +23,15 @@ var (
 	Shapes = []*Shape{Slab, Cylinder, Sphere, ShortCylinder, Bar, Brick, Spheroid, LayeredSlab, Stirred}
 )
 
+// IrregularPieces is the guide to the shape that stands for a piece that has none of them. What it says of spheres and cylinders is held by a test
+// against spheroids of 1:1 to 1:3; that a shape which contains another stays behind it follows from the comparison principle.
+const IrregularPieces = "A piece that is none of these shapes: take the thickest section that fits into it, and the fewest faces through which heat passes; what is left out " +
+	"then makes the prediction slow, which is the safe side for heating and for chilling. " +
+	"Slow: a slab of its smallest thickness at the thickest place, or a long cylinder of its smaller diameter (a spheroid of the same diameter is ahead of it). " +
+	"Near: a spheroid with its length as thickness and its smaller diameter, for eggs, potatoes and boned joints; a brick or short cylinder that the piece fits into. " +
+	"Fast, on the unsafe side: a sphere of its smaller diameter, or any shape that fits into the piece. " +
+	"Of pieces that differ take the largest in the load. A bone, a tin or a liquid core is a food of its own: a layer, not a correction."
+
 // Surface is a kind of surroundings: the word of the column Surroundings.
 type Surface struct {
 	Name, Help string

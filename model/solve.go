@@ -208,7 +208,9 @@ func (s *solver) fewer(a, more int) int {
 	switch {
 	case s.kinds[a] == lumped:
 		return 1
-	case s.product.Shape == LayeredSlab: // of layers with few polynomials one less
+	case s.ball != nil && a == 1:
+		return min(n-2, s.fewer(0, more))
+	case s.product.Shape == LayeredSlab || s.ball != nil: // of layers with few polynomials one less
 		return n * 4 / 5
 	case s.kinds[a] == planeFull:
 		return n - 4
@@ -682,7 +684,7 @@ func (s *solver) estimate(h *History, more int) {
 	case one && s.used == 1 && (s.kinds[0] == planeHalf || s.kinds[0] == planeFull):
 		worst = s.tails(h, f)
 	default:
-		worst = s.again(h, more) / fewerWorse
+		worst = s.again(h, more) / s.worse()
 	}
 	h.ErrorK = max(worst, 1e-5)
 	for _, cs := range s.chain {
@@ -804,6 +806,14 @@ func (s *solver) turns(step int) []float64 {
 // fewerWorse divides the difference of the two solutions: two polynomials fewer on a half axis were 6 to 20 times worse in all
 // reference problems, and in random chains of spheres and bricks the true error came up to two thirds of the difference.
 const fewerWorse = 2
+
+// worse is what the difference to the solution with fewer polynomials is divided by.
+func (s *solver) worse() float64 {
+	if s.ball != nil {
+		return 4
+	}
+	return fewerWorse
+}
 
 // forget drops what was made for the nodes.
 func (f *tensor) forget() {
