@@ -434,10 +434,10 @@ func (c *checker) cold(st *Step, e *Exposure, field string, low float64) {
 
 // coldFor does so for one food.
 func (c *checker) coldFor(f *Material, st *Step, e *Exposure, field string, low float64) {
-	typed := fmt.Sprintf("%g °C", low)
+	typed := func() string { return fmt.Sprintf("%g °C", low) }
 	if f.FreezingC == nil {
 		if low < unfrozenC {
-			c.add(e.At, field, typed, fmt.Sprintf("the food could freeze here, and its freezing point is not known, so nothing below %g °C is calculated", unfrozenC),
+			c.add(e.At, field, typed(), fmt.Sprintf("the food could freeze here, and its freezing point is not known, so nothing below %g °C is calculated", unfrozenC),
 				"give the food's freezing point in Foods; a chill medium below it is then raised to it, which is a bound on the safe side")
 		}
 		return
@@ -445,7 +445,7 @@ func (c *checker) coldFor(f *Material, st *Step, e *Exposure, field string, low 
 	if low >= *f.FreezingC || f.freezes() || raises(st.Stage) {
 		return
 	}
-	c.add(e.At, field, typed, fmt.Sprintf("the food could freeze here (its freezing point is %g °C), and %s", *f.FreezingC, f.noIce()), iceNeeds)
+	c.add(e.At, field, typed(), fmt.Sprintf("the food could freeze here (its freezing point is %g °C), and %s", *f.FreezingC, f.noIce()), iceNeeds)
 }
 
 // raises tells whether a medium below the freezing point may be raised to it: only where the food is to get colder,

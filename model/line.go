@@ -265,7 +265,7 @@ func (w *lineSampler) look() (low, high extreme) {
 	st := w.sg.step
 	w.fill()
 	low, high, turns := w.ends()
-	w.known = profile{}
+	w.known, w.near.move = profile{}, 0
 	lower, upper, clear := w.gradients()
 	inside := func(e extreme) bool { return !slices.Contains(w.b.nodes.x[0], e.x[0]) }
 	rise := w.b.buf[len(w.b.buf)-1] - w.b.buf[0]

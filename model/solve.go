@@ -138,12 +138,13 @@ func (s *solver) layOut() {
 	for i := range s.steps {
 		s.settle = min(s.settle, s.steps[i].DurationS/4)
 	}
+	usual := &filmCase{shape: s.product.Shape, size: s.product.Size, foodC: 50, mediumC: 20, airMS: 1}
 	for a := 0; a < s.used; a++ {
 		s.foMin[a] = alpha * s.settle / (s.radii[a] * s.radii[a])
 		for i := range s.steps {
 			for _, f := range s.faces[a] {
 				e := s.steps[i].on(f)
-				u := e.filmUsed(nil, &filmCase{shape: s.product.Shape, size: s.product.Size, foodC: 50, mediumC: 20, airMS: 1})
+				u := e.filmUsed(nil, usual)
 				s.sharp[a] = s.sharp[a] || u.TotalW*s.radii[a]/q.KWmK > sharpBiot
 			}
 		}
