@@ -205,6 +205,9 @@ func (c *checker) points() {
 				c.add(pt.At, name, fmt.Sprintf("%g mm", 1000*got[i]), fmt.Sprintf("the point %s lies outside the food, which reaches %g mm from its centre in this direction", pt.Name, 1000*half[i]), "measure from the geometric centre")
 			}
 		}
+		if p.Shape == Spheroid && got[0] <= half[0]+roundingM && got[1] <= half[1]+roundingM && math.Hypot(got[0]/half[0], got[1]/half[1]) > 1+roundingM/min(half[0], half[1]) {
+			c.add(pt.At, "Across", fmt.Sprintf("%g mm", 1000*got[1]), fmt.Sprintf("the point %s lies outside the food: %g mm up, the spheroid reaches %.1f mm across", pt.Name, 1000*got[0], 1000*half[1]*math.Sqrt(max(0, 1-math.Pow(got[0]/half[0], 2)))), "measure from the geometric centre")
+		}
 	}
 }
 

@@ -30,7 +30,7 @@ const bondM, beyondM = 1e-10, 1e-9
 func symmetric(layers []Layer) bool {
 	for i := range layers {
 		j := len(layers) - 1 - i
-		if layers[i].Food != layers[j].Food || math.Abs(layers[i].ThicknessM-layers[j].ThicknessM) > 1e-12 {
+		if !sameFood(layers[i].Food, layers[j].Food) || math.Abs(layers[i].ThicknessM-layers[j].ThicknessM) > 1e-12 {
 			return false
 		}
 		if i < j && layers[i].BelowM2KW != layers[j-1].BelowM2KW {
@@ -39,6 +39,9 @@ func symmetric(layers []Layer) bool {
 	}
 	return true
 }
+
+// sameFood tells whether two layers are of one food: the same row, or the same built-in one.
+func sameFood(a, b *Material) bool { return a == b || a.At == b.At && a.Name == b.Name }
 
 // stackOf places the parts of a layered slab; degrees gives how many polynomials a part takes.
 func stackOf(kind axisKind, layers []Layer, degrees func(p *part) int) *stack {
@@ -197,7 +200,7 @@ func (s *stack) terms(cs *chainStep, mem *slab) terms {
 		v := mem.take(n)
 		end(i, xi, 1, v)
 		p := &s.parts[i]
-		if !(f.u*s.thickM(p) < heldBallBiot*cs.layers[p.layer].KWmK) {
+		if !(f.u*s.thickM(p) < heldFrom*cs.layers[p.layer].KWmK) {
 			te.held = append(te.held, holding{v: v, group: f.group, share: 1})
 			return
 		}

@@ -302,13 +302,12 @@ func (s *solver) run(more int) *History {
 
 // build runs the chain, or only its last step if a field that holds the others is given; a new field lies in mem.
 func (s *solver) build(axes [3]*axis, nd *nodes, f field, mem *slab) field {
+	if m, ok := f.(*modal); ok {
+		m.run(s.chain[len(s.chain)-1])
+		return m
+	}
 	if fn := s.functions(axes); fn != nil {
-		m, ok := f.(*modal)
-		if ok {
-			m.run(s.chain[len(s.chain)-1])
-			return m
-		}
-		m = newModal(fn, nd, s.product.StartC, mem, &s.tmp.call)
+		m := newModal(fn, nd, s.product.StartC, mem, &s.tmp.call)
 		for _, cs := range s.chain {
 			m.run(cs)
 		}
@@ -908,7 +907,10 @@ func (s *solver) method() string {
 	}
 	form := "polynomials through the food"
 	if f, ok := s.main.(*modal); ok {
-		n, form = fmt.Sprint(f.fn.size()), "polynomials on the whole of it"
+		n, form = fmt.Sprint(f.fn.size()), "polynomials through its layers"
+		if s.ball != nil {
+			form = "polynomials on the ball that the spheroid is mapped to"
+		}
 	}
 	if _, ok := s.main.(*product); ok {
 		form = "polynomials, as products of axes"
