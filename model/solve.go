@@ -279,7 +279,7 @@ func (s *solver) run(more int) *History {
 	t := 0.0
 	lo, hi := s.product.StartC, s.product.StartC // of the food at the start of the step
 	for i := range s.steps {
-		span := Span{Step: &s.steps[i], StartS: t}
+		span := Span{Step: &s.steps[i], StartS: t, Method: ExactInTime}
 		s.airQuestion(&s.steps[i], lo)
 		if len(s.refused) > 0 {
 			return nil
