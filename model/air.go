@@ -42,12 +42,16 @@ type correlation struct {
 	least   func(pr float64) float64    // smallest x; nil: its low end is that of a surface in air at rest
 	most    float64                     // largest x: beyond, the value there is kept
 	held    string                      // what that means, in words
+	// perK and by are nusselt of free convection in two parts: two numbers of the air at a Rayleigh number by the K, and the rest, by the
+	// difference in K.
+	perK func(ra, pr float64) (b, d float64)
+	by   func(b, d, differenceK float64) float64
 }
 
 // The correlations. Their formulas stand below, with their sources.
 var (
-	freeCylinder = correlation{name: "Churchill & Chu 1975 (horizontal cylinder in still air, taken at the largest size, Rayleigh number up to 1e12)", nusselt: churchillChu, most: 1e12}
-	freeSphere   = correlation{name: "Churchill 1983 (sphere in still air, Rayleigh number up to 1e13)", nusselt: sphereFree, most: 1e13}
+	freeCylinder = correlation{name: "Churchill & Chu 1975 (horizontal cylinder in still air, taken at the largest size, Rayleigh number up to 1e12)", nusselt: churchillChu, perK: churchillChuPerK, by: churchillChuBy, most: 1e12}
+	freeSphere   = correlation{name: "Churchill 1983 (sphere in still air, Rayleigh number up to 1e13)", nusselt: sphereFree, perK: sphereFreePerK, by: sphereFreeBy, most: 1e13}
 
 	forcedCylinder = correlation{name: "Churchill & Bernstein 1977 (cylinder in cross flow, Reynolds × Prandtl number from 0.2, Reynolds number up to 1e7)", nusselt: churchillBernstein,
 		least: func(pr float64) float64 { return 0.2 / pr }, most: 1e7, held: "whose value there is kept, which is low"}
@@ -78,13 +82,31 @@ func plateForced(re, pr float64) float64 { return 0.664 * math.Sqrt(re) * math.C
 // churchillChu is the Nusselt number of a horizontal cylinder in still fluid, on its diameter, 1e-5 < Ra < 1e12
 // (Churchill & Chu 1975, Int. J. Heat Mass Transfer 18:1049-1053).
 func churchillChu(ra, pr float64) float64 {
-	x := 0.60 + 0.387*math.Cbrt(math.Sqrt(ra))/math.Pow(1+math.Pow(0.559/pr, 9.0/16), 8.0/27)
+	b, d := churchillChuPerK(ra, pr)
+	return churchillChuBy(b, d, 1)
+}
+
+func churchillChuPerK(ra, pr float64) (b, _ float64) {
+	return 0.387 * math.Cbrt(math.Sqrt(ra)) / math.Pow(1+math.Pow(0.559/pr, 9.0/16), 8.0/27), 0
+}
+
+func churchillChuBy(b, _, differenceK float64) float64 {
+	x := 0.60 + b*math.Cbrt(math.Sqrt(differenceK))
 	return x * x
 }
 
 // sphereFree is the Nusselt number of a sphere in still fluid, on its diameter, Ra < 1e13
 // (Churchill 1983, Heat Exchanger Design Handbook, section 2.5.7; section from memory).
 func sphereFree(ra, pr float64) float64 {
+	b, d := sphereFreePerK(ra, pr)
+	return sphereFreeBy(b, d, 1)
+}
+
+func sphereFreePerK(ra, pr float64) (b, d float64) {
 	p := 1 + math.Pow(0.469/pr, 9.0/16)
-	return 2 + 0.589*math.Sqrt(math.Sqrt(ra))/math.Pow(p, 4.0/9)*math.Pow(1+7.44e-8*ra/math.Pow(p, 16.0/9), 1.0/12)
+	return 0.589 * math.Sqrt(math.Sqrt(ra)) / math.Pow(p, 4.0/9), 7.44e-8 * ra / math.Pow(p, 16.0/9)
+}
+
+func sphereFreeBy(b, d, differenceK float64) float64 {
+	return 2 + b*math.Sqrt(math.Sqrt(differenceK))*math.Sqrt(math.Sqrt(math.Cbrt(1+d*differenceK)))
 }

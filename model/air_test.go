@@ -149,3 +149,20 @@ func TestCorrelationsKeepToTheirRanges(t *testing.T) {
 		})
 	}
 }
+
+// The film between two temperatures of the air is interpolated: within 1e-7 of the formulas.
+func TestFilmBetweenNodes(t *testing.T) {
+	for _, shape := range []*Shape{Slab, Sphere, Cylinder} {
+		for _, speed := range []float64{0, 0.2, 2.7} {
+			f := newAirFilm(speed > 0, &filmCase{shape: shape, size: Size{ThicknessM: 0.05, DiameterM: 0.07}, mediumC: 4, airMS: speed})
+			for _, airC := range []float64{-44, -3, 21, 94, 263, 610} {
+				for surface := -31.0; surface < 121; surface += 1.7 {
+					got, now := f.at(surface, airC), math.NaN()
+					if now, _ = f.which(surface, airC); math.Abs(got-now) > 1e-7*now {
+						t.Fatalf("%s, %g m/s, surface %g, air %g °C: %.10g, want %.10g", shape.Name, speed, surface, airC, got, now)
+					}
+				}
+			}
+		}
+	}
+}

@@ -31,16 +31,22 @@ const maxDegrees = 48
 //	spherical  sqrt((4j+3)/3) P2j+1(x)/x  measure 3x² dx
 //
 // (P: Legendre polynomials; their norms: Abramowitz & Stegun 1964, 22.2.10.) The stiffness matrix ∫φi'φj' is brought to
-// diagonal form once: its eigenvectors are u, its eigenvalues d, the values of the new functions at the upper face top.
+// diagonal form once, in sets of functions that it does not mix: the even and the odd ones of planeFull, else all.
 type base struct {
-	kind axisKind
-	n    int
-	d    []float64 // n, rising; d[0] = 0
-	u    []float64 // n×n, u[m*n+i]: polynomial m in function i
-	top  []float64 // n, function i at the upper face (1)
-	low  []float64 // n, function i at the lower face (-1); planeFull only
+	kind  axisKind
+	n     int
+	d     []float64      // n, rising; d[0] = 0
+	u     []float64      // n×n, u[m*n+i]: polynomial m in function i
+	sets  []*functionSet // set p holds the polynomials p, p+len(sets), p+2·len(sets) …
+	sites [4][2]*sites   // by the number of axes with extent; every other node only in the second
+}
 
-	sites [4][2]*sites // by the number of axes with extent; every other node only in the second
+// functionSet are the functions that are sums of the polynomials of a set: eigenvectors u of their stiffness matrix, with eigenvalues d.
+type functionSet struct {
+	n   int
+	d   []float64 // n, rising; the first of the first set is 0
+	u   []float64 // n×n, u[m*n+i]: the set's polynomial m in function i
+	top []float64 // n, function i at the upper face (1); at the lower face of planeFull (-1) the odd ones have the other sign
 }
 
 // sites are the nodes of an axis.
@@ -87,31 +93,69 @@ func (b *base) sitesFor(used int, coarse bool) *sites {
 
 // newBase makes the base of a kind with n functions.
 func newBase(kind axisKind, n int) *base {
-	b := &base{kind: kind, n: n, d: make([]float64, n), u: make([]float64, n*n)}
+	b := &base{kind: kind, n: n}
 	if kind == lumped {
-		b.u[0], b.top = 1, []float64{1}
+		b.sets = []*functionSet{{1, []float64{0}, []float64{1}, []float64{1}}}
+		b.d, b.u = b.sets[0].d, b.sets[0].u
 		return b
 	}
+	phi, all := make([]float64, n), b.stiffness()
+	b.values(1, phi, nil)
+	sets := 1
+	if kind == planeFull {
+		sets = 2
+	}
+	for p := 0; p < sets; p++ {
+		var own []float64
+		k := mat.NewSymDense((n-p+sets-1)/sets, nil)
+		for i := p; i < n; i += sets {
+			own = append(own, phi[i])
+			for j := i; j < n; j += sets {
+				k.SetSym(i/sets, j/sets, all.At(i, j))
+			}
+		}
+		b.sets = append(b.sets, newFunctionSet(k, own, p == 0))
+	}
+	b.d, b.u = make([]float64, n), make([]float64, n*n)
+	at := [2]int{}
+	for i := range b.d { // the sets together
+		p := 0
+		if sets == 2 && (at[0] == b.sets[0].n || at[1] < b.sets[1].n && b.sets[1].d[at[1]] < b.sets[0].d[at[0]]) {
+			p = 1
+		}
+		f := b.sets[p]
+		b.d[i] = f.d[at[p]]
+		for m := 0; m < f.n; m++ {
+			b.u[(m*sets+p)*n+i] = f.u[m*f.n+at[p]]
+		}
+		at[p]++
+	}
+	return b
+}
+
+// newFunctionSet brings a stiffness matrix to diagonal form; phi are the polynomials at the upper face, the first of which may be the constant.
+func newFunctionSet(k *mat.SymDense, phi []float64, constant bool) *functionSet {
+	n := len(phi)
+	f := &functionSet{n: n, d: make([]float64, n), u: make([]float64, n*n), top: make([]float64, n)}
 	var eig mat.EigenSym
-	eig.Factorize(b.stiffness(), true) // cannot fail: the matrix is symmetric and finite
-	eig.Values(b.d)
-	b.d[0] = 0 // the constant carries no gradient
+	eig.Factorize(k, true) // cannot fail: the matrix is symmetric and finite
+	eig.Values(f.d)
 	var vec mat.Dense
 	eig.VectorsTo(&vec)
 	for m := 0; m < n; m++ {
 		for i := 0; i < n; i++ {
-			b.u[m*n+i] = vec.At(m, i)
+			f.u[m*n+i] = vec.At(m, i)
 		}
 	}
-	for m := 0; m < n; m++ { // the first function is the constant 1 and nothing else
-		b.u[m*n], b.u[m] = 0, 0
+	if constant { // it carries no gradient, and the first function is it and nothing else
+		f.d[0] = 0
+		for m := 0; m < n; m++ {
+			f.u[m*n], f.u[m] = 0, 0
+		}
+		f.u[0] = 1
 	}
-	b.u[0] = 1
-	b.top = b.functionsAt(1)
-	if kind == planeFull {
-		b.low = b.functionsAt(-1)
-	}
-	return b
+	addColumns(f.top, f.u, n, phi)
+	return f
 }
 
 // stiffness is the matrix ∫φi'φj' of the polynomials in the measure of the axis, n×n.
@@ -141,19 +185,6 @@ func (b *base) stiffness() *mat.SymDense {
 		}
 	}
 	return k
-}
-
-// functionsAt gives the values of the n functions at x.
-func (b *base) functionsAt(x float64) []float64 {
-	n := b.n
-	phi, out := make([]float64, n), make([]float64, n)
-	b.values(x, phi, nil)
-	for i := range out {
-		for m := 0; m < n; m++ {
-			out[i] += phi[m] * b.u[m*n+i]
-		}
-	}
-	return out
 }
 
 // values fills phi (n) with the polynomials at x and, unless nil, dphi with their slopes.
@@ -312,27 +343,79 @@ func (a *axis) step(mem, tmp *slab, p Properties, lo, up film) *axisStep {
 		return min(f.u*a.radiusM/p.KWmK*a.weight(), heldBiot)
 	}
 	s := &axisStep{rate: mem.take(n), gUp: mem.take(n), gLo: mem.take(n), b: mem.take(n * n)}
-	var d, g []float64
 	if a.kind == planeFull {
-		d1, q1, g1 := rankOne(tmp, a.d, a.low, rho(lo))
-		v := tmp.take(n)
-		addColumns(v, q1, n, a.top)
-		var q2 []float64
-		d, q2, g = rankOne(tmp, d1, v, rho(up))
-		addColumns(s.gLo, q2, n, g1)
-		multiply(n, a.u, multiply(n, q1, q2, tmp.take(n*n)), s.b)
+		a.twoFaces(s, tmp, rho(lo), rho(up))
 	} else {
-		var q []float64
-		d, q, g = rankOne(tmp, a.d, a.top, rho(up))
-		multiply(n, a.u, q, s.b)
+		f := a.sets[0]
+		d, q, g := rankOne(tmp, f.d, f.top, rho(up))
+		multiply(n, f.u, q, s.b)
+		copy(s.rate, d)
+		copy(s.gUp, g)
 	}
-	for i := range d {
-		s.rate[i] = d[i] * scale
+	for i := range s.rate {
+		s.rate[i] *= scale
 		s.gLo[i] *= scale
-		s.gUp[i] = g[i] * scale
+		s.gUp[i] *= scale
 	}
 	tmp.back(mark)
 	return s
+}
+
+// twoFaces solves an axis with two faces, of rates lo and up. With the weaker film on both faces even and odd functions do not mix and are
+// half as many each; what the stronger film has more comes on top of that.
+func (a *axis) twoFaces(s *axisStep, tmp *slab, lo, up float64) {
+	n := a.n
+	weak, strong, less, more, sign := s.gLo, s.gUp, lo, up, 1.0 // sign: of the odd functions at the stronger face
+	if lo > up {
+		weak, strong, less, more, sign = s.gUp, s.gLo, up, lo, -1
+	}
+	var d, v, b [2][]float64 // by set: eigenvalues, values at the upper face, polynomials in functions
+	for p, f := range a.sets {
+		var q, g []float64
+		d[p], q, g = rankOne(tmp, f.d, f.top, 2*less)
+		b[p] = multiply(f.n, f.u, q, tmp.take(f.n*f.n))
+		if v[p] = f.top; less > 0 {
+			v[p] = g
+			for i := range g {
+				g[i] /= 2 * less
+			}
+		}
+	}
+	all, atStrong, driven := tmp.take(n), tmp.take(n), tmp.take(n)
+	var place [2][maxDegrees]int // of the functions of a set among all
+	for k, at := 0, [2]int{}; k < n; k++ {
+		p, odd := 0, 1.0
+		if at[0] == len(d[0]) || at[1] < len(d[1]) && d[1][at[1]] < d[0][at[0]] {
+			p, odd = 1, sign
+		}
+		i := at[p]
+		at[p]++
+		place[p][i] = k
+		all[k], atStrong[k], driven[k] = d[p][i], odd*v[p][i], less*v[p][i]
+		if p == 1 {
+			driven[k] *= -odd
+		}
+		if k > 0 && all[k] <= all[k-1] { // two that are one to rounding
+			all[k] = math.Nextafter(all[k-1], math.Inf(1))
+		}
+	}
+	mu, q, g := rankOne(tmp, all, atStrong, more-less)
+	copy(s.rate, mu)
+	addColumns(weak, q, n, driven)
+	for i := range strong {
+		if strong[i] = atStrong[i] * more; more > less {
+			strong[i] = g[i] * (more / (more - less))
+		}
+	}
+	for p, f := range a.sets {
+		rows := tmp.take(f.n * n)
+		for i, k := range place[p][:f.n] {
+			copy(rows[i*n:][:n], q[k*n:][:n])
+		}
+		for m := 0; m < f.n; m++ {
+			addColumns(s.b[(2*m+p)*n:][:n], rows, n, b[p][m*f.n:][:f.n])
+		}
+	}
 }
 
 // heldBiot stands for an infinite film: the surface is within 1e-10 of its medium from the first instant on.

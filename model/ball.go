@@ -57,8 +57,11 @@ type jacobi struct{ a, b, c float64 }
 
 var (
 	ballsMu sync.Mutex
-	balls   = map[[2]int]*ballBase{} // made once each
+	balls   = map[[2]int]*ballBase{} // kept: one takes some ms to make
 )
+
+// mostBalls is how many bases are kept: a large one takes 2 MB.
+const mostBalls = 24
 
 // ballOf gives the base of degree p with harmonics up to l.
 func ballOf(p, l int) *ballBase {
@@ -66,6 +69,9 @@ func ballOf(p, l int) *ballBase {
 	defer ballsMu.Unlock()
 	if b := balls[[2]int{p, l}]; b != nil {
 		return b
+	}
+	if len(balls) >= mostBalls {
+		clear(balls)
 	}
 	b := newBallBase(p, l)
 	balls[[2]int{p, l}] = b
@@ -198,8 +204,9 @@ func (b *ball) one(out []float64) {
 
 func (b *ball) mean(out []float64) { b.one(out) }
 
-// heldBallBiot is the film by conductivity and radius from which a surface counts as held.
-const heldBallBiot = 1e7
+// heldFrom is the film by conductivity and radius (of a layer: thickness) from which a surface counts as held: it is then within a ten
+// millionth of what the food changes by.
+const heldFrom = 1e7
 
 func (b *ball) terms(cs *chainStep, mem *slab) terms {
 	n := b.n
@@ -221,7 +228,7 @@ func (b *ball) terms(cs *chainStep, mem *slab) terms {
 		return te
 	}
 	l := b.l + 1
-	if !(u*max(b.a, b.b) < heldBallBiot*cs.props.KWmK) {
+	if !(u*max(b.a, b.b) < heldFrom*cs.props.KWmK) {
 		for m := 0; m < l; m++ {
 			h := holding{v: mem.take(n), group: group}
 			copy(h.v[b.start[m]:b.start[m+1]], b.face[b.start[m]:])

@@ -38,7 +38,19 @@ func newBody(of body, nd *nodes) *body {
 			far[i] += x[a] * x[a] * b.radii[a] * b.radii[a]
 		}
 	}
-	slices.SortStableFunc(b.order, func(i, j int) int { return cmp.Compare(far[i], far[j]) })
+	if c := n / 2; n == len(nd.x[0]) && nd.x[0][0] < 0 { // nearly sorted already
+		for k := range b.order {
+			if b.order[k] = c + k/2; k%2 == 1 {
+				b.order[k] = c - (k+1)/2
+			}
+		}
+	}
+	slices.SortFunc(b.order, func(i, j int) int {
+		if far[i] != far[j] {
+			return cmp.Compare(far[i], far[j])
+		}
+		return i - j
+	})
 	for k, i := range b.order {
 		b.rank[i] = k
 	}
@@ -199,6 +211,9 @@ func (b *body) deeper(i int, g, stride [3]int, sign float64) bool {
 func (b *body) promise(i int, g, stride [3]int, sign float64) float64 {
 	low := sign * b.buf[i]
 	for a := range g {
+		if len(b.nodes.x[a]) == 1 {
+			continue
+		}
 		x, f := b.around(onAxis{a, i, g[a], stride[a]}, sign)
 		v := valleyOf(x, f)
 		low -= v.bend * (v.start - v.mid) * (v.start - v.mid)
@@ -522,14 +537,19 @@ func (h *History) Sample(everyS float64) Samples {
 	if everyS > 0 && end/everyS < 1e7 {
 		times = make([]float64, 0, int(end/everyS)+len(h.Spans)+2)
 	}
+	ended := 0 // spans
 	for k := 0; everyS > 0 && float64(k)*everyS < end; k++ {
-		times = append(times, float64(k)*everyS)
+		at := float64(k) * everyS
+		for ; ended < len(h.Spans) && h.Spans[ended].EndS <= at; ended++ { // in order, so that there is nothing to sort
+			times = append(times, h.Spans[ended].EndS)
+		}
+		times = append(times, at)
 	}
 	if len(times) == 0 {
 		times = append(times, 0)
 	}
-	for i := range h.Spans {
-		times = append(times, h.Spans[i].EndS)
+	for ; ended < len(h.Spans); ended++ {
+		times = append(times, h.Spans[ended].EndS)
 	}
 	s := Samples{TimesS: near(rising(times))}
 	n := len(s.TimesS)

@@ -205,6 +205,9 @@ func (c *checker) points() {
 				c.add(pt.At, name, fmt.Sprintf("%g mm", 1000*got[i]), fmt.Sprintf("the point %s lies outside the food, which reaches %g mm from its centre in this direction", pt.Name, 1000*half[i]), "measure from the geometric centre")
 			}
 		}
+		if p.Shape == Spheroid && got[0] <= half[0]+roundingM && got[1] <= half[1]+roundingM && math.Hypot(got[0]/half[0], got[1]/half[1]) > 1+roundingM/min(half[0], half[1]) {
+			c.add(pt.At, "Across", fmt.Sprintf("%g mm", 1000*got[1]), fmt.Sprintf("the point %s lies outside the food: %g mm up, the spheroid reaches %.1f mm across", pt.Name, 1000*got[0], 1000*half[1]*math.Sqrt(max(0, 1-math.Pow(got[0]/half[0], 2)))), "measure from the geometric centre")
+		}
 	}
 }
 
@@ -434,10 +437,10 @@ func (c *checker) cold(st *Step, e *Exposure, field string, low float64) {
 
 // coldFor does so for one food.
 func (c *checker) coldFor(f *Material, st *Step, e *Exposure, field string, low float64) {
-	typed := fmt.Sprintf("%g °C", low)
+	typed := func() string { return fmt.Sprintf("%g °C", low) }
 	if f.FreezingC == nil {
 		if low < unfrozenC {
-			c.add(e.At, field, typed, fmt.Sprintf("the food could freeze here, and its freezing point is not known, so nothing below %g °C is calculated", unfrozenC),
+			c.add(e.At, field, typed(), fmt.Sprintf("the food could freeze here, and its freezing point is not known, so nothing below %g °C is calculated", unfrozenC),
 				"give the food's freezing point in Foods; a chill medium below it is then raised to it, which is a bound on the safe side")
 		}
 		return
@@ -445,7 +448,7 @@ func (c *checker) coldFor(f *Material, st *Step, e *Exposure, field string, low 
 	if low >= *f.FreezingC || f.freezes() || raises(st.Stage) {
 		return
 	}
-	c.add(e.At, field, typed, fmt.Sprintf("the food could freeze here (its freezing point is %g °C), and %s", *f.FreezingC, f.noIce()), iceNeeds)
+	c.add(e.At, field, typed(), fmt.Sprintf("the food could freeze here (its freezing point is %g °C), and %s", *f.FreezingC, f.noIce()), iceNeeds)
 }
 
 // raises tells whether a medium below the freezing point may be raised to it: only where the food is to get colder,

@@ -87,6 +87,18 @@ func TestCheckRefuses(t *testing.T) {
 		{"point outside", func(p *Product, _ []Step) {
 			p.Points = []Point{{At: cell.Ref{Sheet: "Points", Row: 4}, Name: "probe", Place: Place{UpM: 0.03}}}
 		}, "Points row 4", "Up", "outside the food"},
+		{"point outside a spheroid, though within its box", func(p *Product, _ []Step) {
+			p.Shape, p.Size.ThicknessM, p.Size.DiameterM = Spheroid, 0.06, 0.04
+			p.Points = []Point{{At: cell.Ref{Sheet: "Points", Row: 4}, Name: "probe", Place: Place{UpM: 0.024, AcrossM: 0.013}}}
+		}, "Points row 4", "Across", "24 mm up, the spheroid reaches 12.0 mm across"},
+		{"a layer in contact below nothing", func(p *Product, _ []Step) {
+			layered(p)
+			p.Layers[1].BelowM2KW = 0.01
+		}, "Layers row 3", "Contact resistance below", "no layer below the last"},
+		{"a contact that conducts more than perfectly", func(p *Product, _ []Step) {
+			layered(p)
+			p.Layers[0].BelowM2KW = -0.01
+		}, "Layers row 2", "Contact resistance below", "0, for layers that touch perfectly, or more"},
 		{"freezing stage", func(_ *Product, s []Step) { s[1].Stage = Freeze }, "Steps row 3", "Stage", "freezing and melting"},
 		{"thawing stage", func(_ *Product, s []Step) { s[0].Stage = Thaw }, "Steps row 2", "Stage", "freezing and melting"},
 		{"radiation beside a film that stands for everything", func(_ *Product, s []Step) { s[0].RadiatingC = ptr(170.0) }, "Steps row 2", "Radiating temperature", "still air or moving air"},

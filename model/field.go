@@ -317,18 +317,21 @@ func (f *tensor) carry(st *tensorStep) []float64 {
 	sg := &f.segs[len(f.segs)-1]
 	now := f.tmp.take(n)
 	f.modes(sg, sg.t1-sg.t0, now)
+	if f.single() {
+		q := f.tmp.take(n)
+		addRows(q, sg.step.ax[0].b, n, now)
+		addColumns(out, st.ax[0].b, n, q)
+		f.tmp.back(mark)
+		return out
+	}
 	var p [3][]float64
 	for a := range f.axes { // from modes of the old step to modes of the new one
 		p[a] = project(f.tmp, f.axes[a].n, sg.step.ax[a].b, st.ax[a].b)
 	}
-	if f.single() {
-		addRows(out, p[0], n, now)
-	} else {
-		n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
-		along(now, out, p[0], 1, n0, n1*n2)
-		along(out, now, p[1], n0, n1, n2)
-		along(now, out, p[2], n0*n1, n2, 1)
-	}
+	n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
+	along(now, out, p[0], 1, n0, n1*n2)
+	along(out, now, p[1], n0, n1, n2)
+	along(now, out, p[2], n0*n1, n2, 1)
 	f.tmp.back(mark)
 	return out
 }

@@ -40,7 +40,20 @@ type airFilm struct {
 	lengthM, airMS, totalPa float64
 	free, forced            *correlation // forced: nil in still air, and below its range
 	below                   *correlation // the forced one that is left out because the air is too slow for it; nil usually
+	nodes                   []airNode    // what the film is interpolated from; nil: it is worked out each time
 }
+
+// airNode is what a film depends on at one temperature of the air, made when it is first asked for.
+type airNode struct {
+	ready   bool
+	kL      float64 // conductivity by length, W/(m²·K)
+	b, d    float64 // of free convection, by the difference in K: see freeBy
+	mostK   float64 // difference at which free convection leaves its range
+	forcedW float64 // film of forced convection, W/(m²·K); 0 if none counts
+}
+
+// Air nodes: 4 K apart, so that a cubic through four of them is within 1e-7 of the formulas.
+const airNodesFromC, airNodeK, airNodes = -48, 4, 100
 
 // newAirFilm takes the correlations that fit a case. Whether the air is too slow for the forced one is decided by the air alone, so that
 // the film does not jump while the surface warms.
@@ -49,6 +62,7 @@ func newAirFilm(moving bool, c *filmCase) *airFilm {
 	if c.shape == Sphere {
 		f.free = &freeSphere
 	}
+	f.nodes = make([]airNode, airNodes)
 	if !moving {
 		return f
 	}
@@ -64,6 +78,9 @@ func newAirFilm(moving bool, c *filmCase) *airFilm {
 	if a := airOf(c.mediumC, f.totalPa); f.reynolds(&a) < f.forced.least(a.pr()) {
 		f.below, f.forced = f.forced, nil
 	}
+	if a := airOf(airLowC, f.totalPa); f.forced != nil && f.reynolds(&a) > f.forced.most { // it turns level somewhere
+		f.nodes = nil
+	}
 	return f
 }
 
@@ -77,8 +94,40 @@ const gravity = 9.80665 // m/s²
 
 // at gives the film in W/(m²·K), with the air at the mean of surface and medium.
 func (f *airFilm) at(surfaceC, airC float64) float64 {
-	w, _ := f.which(surfaceC, airC)
-	return w
+	x := (max((surfaceC+airC)/2, airLowC) - airNodesFromC) / airNodeK
+	i := int(x)
+	if !(x >= 1 && i+2 < len(f.nodes)) {
+		w, _ := f.which(surfaceC, airC)
+		return w
+	}
+	near := f.nodes[i-1 : i+3]
+	for j := range near {
+		if !near[j].ready {
+			f.ready(&near[j], airNodesFromC+airNodeK*float64(i-1+j))
+		}
+	}
+	u := x - float64(i) // Lagrange's cubic
+	weights := [4]float64{-u * (u - 1) * (u - 2) / 6, (u + 1) * (u - 1) * (u - 2) / 2, -(u + 1) * u * (u - 2) / 2, (u + 1) * u * (u - 1) / 6}
+	var n airNode
+	for j, w := range weights {
+		n.kL += w * near[j].kL
+		n.b += w * near[j].b
+		n.d += w * near[j].d
+		n.mostK += w * near[j].mostK
+		n.forcedW += w * near[j].forcedW
+	}
+	return max(n.kL*f.free.by(n.b, n.d, min(math.Abs(surfaceC-airC), n.mostK)), n.forcedW)
+}
+
+// ready makes a node at a temperature of the air.
+func (f *airFilm) ready(n *airNode, tC float64) {
+	a := airOf(tC, f.totalPa)
+	ra := f.rayleigh(&a, 1)
+	*n = airNode{ready: true, kL: a.k / f.lengthM, mostK: f.free.most / ra}
+	n.b, n.d = f.free.perK(ra, a.pr())
+	if f.forced != nil {
+		n.forcedW = f.forced.nusselt(f.reynolds(&a), a.pr()) * n.kL
+	}
 }
 
 // which also tells the correlation that decides.
@@ -167,6 +216,9 @@ func (e *Exposure) filmUsed(face *Face, c *filmCase) FilmUsed {
 	}
 	if e.innerFilm(c) {
 		u.Source += innerWords
+		if u.Caution == "" {
+			u.Caution = "film inside the vessel assumed, not measured"
+		}
 	}
 	u.TotalW = 1 / (1/u.FilmW + e.seriesM2KW(c))
 	return u

@@ -22,9 +22,10 @@ type fluxPiece struct {
 const (
 	tableFromC, tableToC = -50, 110 // °C: at the least
 	tableBeyondK         = 10       // beyond the medium
-	tableWidthK          = 1
-	tableFiner           = 8    // pieces that one is cut into
-	tableDepth           = 6    // the narrowest pieces are 1 K / 8^6 wide
+	tableWidthK          = 2        // dry; else tableMoistK
+	tableMoistK          = 1
+	tableFiner           = 4    // pieces that one is cut into
+	tableDepth           = 9    // the narrowest pieces are a few µK wide
 	tableClose           = 4e-7 // largest error of a cubic, by the flux and what a K changes of it
 )
 
@@ -48,8 +49,12 @@ func (t *fluxTable) at(surfaceC float64) (w, slope float64) {
 		x = min(max((surfaceC-t.fromC)*t.perK, 0), tableFiner-0.5) // round-off at its ends must not leave it
 		p = &t.pieces[int(x)]
 	}
-	d := surfaceC - p.lower
-	return p.c[0] + d*(p.c[1]+d*(p.c[2]+d*p.c[3])), p.c[1] + d*(2*p.c[2]+3*d*p.c[3])
+	return p.at(surfaceC - p.lower)
+}
+
+// at gives flux and slope x K above the lower end.
+func (p *fluxPiece) at(x float64) (w, slope float64) {
+	return p.c[0] + x*(p.c[1]+x*(p.c[2]+x*p.c[3])), p.c[1] + x*(2*p.c[2]+3*x*p.c[3])
 }
 
 // cut makes a piece out of values and slopes at its ends, and holds it against the flux between them.
@@ -57,8 +62,17 @@ func (t *fluxTable) cut(i int) {
 	p := &t.pieces[i]
 	a, l := t.fromC+float64(i)*t.width, t.width
 	d := min(slopeK, l/16)
-	wa, sa := t.of(a, d)
-	wb, sb := t.of(t.fromC+float64(i+1)*t.width, d)
+	var wa, sa, wb, sb float64
+	if i > 0 && t.pieces[i-1].ready {
+		wa, sa = t.pieces[i-1].at(l)
+	} else {
+		wa, sa = t.of(a, d)
+	}
+	if i+1 < len(t.pieces) && t.pieces[i+1].ready {
+		wb, sb = t.pieces[i+1].at(0)
+	} else {
+		wb, sb = t.of(t.fromC+float64(i+1)*t.width, d)
+	}
 	rise := (wb - wa) / l
 	p.lower, p.c = a, [4]float64{wa, sa, (3*rise - 2*sa - sb) / l, (sa + sb - 2*rise) / (l * l)}
 	p.ready = true
@@ -68,7 +82,7 @@ func (t *fluxTable) cut(i int) {
 	for _, part := range []float64{0.21, 0.5, 0.79} {
 		x := part * l
 		w, _ := t.of(a+x, 0)
-		if got := p.c[0] + x*(p.c[1]+x*(p.c[2]+x*p.c[3])); math.Abs(got-w) > tableClose*(math.Abs(w)+math.Abs(sa)) {
+		if got, _ := p.at(x); math.Abs(got-w) > tableClose*(math.Abs(w)+math.Abs(sa)) {
 			p.ready = false
 			p.finer = newFluxTable(a, l/tableFiner, tableFiner, t.depth-1, t.of)
 			return
@@ -95,5 +109,9 @@ func (s *skin) tabulate() {
 	for _, c := range s.course.y {
 		low, high = min(low, math.Floor(c-tableBeyondK)), max(high, c+tableBeyondK)
 	}
-	s.table = newFluxTable(low, tableWidthK, int(math.Ceil((high-low)/tableWidthK)), tableDepth, of)
+	width := float64(tableWidthK)
+	if s.moist || s.law != nil {
+		width = tableMoistK
+	}
+	s.table = newFluxTable(low, width, int(math.Ceil((high-low)/width)), tableDepth, of)
 }

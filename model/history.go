@@ -14,7 +14,14 @@ type Span struct {
 	Films       []FilmUsed   // one a face with its own surroundings, at least one
 	MediumFromC *float64     // lowest medium as typed, where it was raised to the freezing point; nil otherwise
 	MediumToC   *float64     // what it was raised to
+	Method      string       // ExactInTime or Marched; "" for a record
 }
+
+// How a step was solved.
+const (
+	ExactInTime = "exact in time"
+	Marched     = "marched"
+)
 
 // FilmUsed tells how a face met its surroundings in a step.
 type FilmUsed struct {

@@ -30,7 +30,7 @@ const bondM, beyondM = 1e-10, 1e-9
 func symmetric(layers []Layer) bool {
 	for i := range layers {
 		j := len(layers) - 1 - i
-		if layers[i].Food != layers[j].Food || math.Abs(layers[i].ThicknessM-layers[j].ThicknessM) > 1e-12 {
+		if !sameFood(layers[i].Food, layers[j].Food) || math.Abs(layers[i].ThicknessM-layers[j].ThicknessM) > 1e-12 {
 			return false
 		}
 		if i < j && layers[i].BelowM2KW != layers[j-1].BelowM2KW {
@@ -39,6 +39,9 @@ func symmetric(layers []Layer) bool {
 	}
 	return true
 }
+
+// sameFood tells whether two layers are of one food: the same row, or the same built-in one.
+func sameFood(a, b *Material) bool { return a == b || a.At == b.At && a.Name == b.Name }
 
 // stackOf places the parts of a layered slab; degrees gives how many polynomials a part takes.
 func stackOf(kind axisKind, layers []Layer, degrees func(p *part) int) *stack {
@@ -103,14 +106,16 @@ func (p *part) outer(xi float64) float64 {
 	return (p.lo + p.hi + xi*(p.hi-p.lo)) / 2
 }
 
-// below tells whether x lies below the joint c, or on it where the part below owns it: the one nearer the centre, of two as near the upper.
-func (s *stack) below(x, c float64) bool {
-	bond := bondM / s.halfM
+// below tells whether a place x belongs to what lies below the joint c, within bond of which it lies on the joint: a place on a joint belongs
+// to the layer nearer the centre, of two as near to the upper.
+func below(x, c, bond float64) bool {
 	if c > bond {
 		return x <= c+bond
 	}
 	return x < c-bond
 }
+
+func (s *stack) below(x, c float64) bool { return below(x, c, bondM/s.halfM) }
 
 // partAt gives the part that a place belongs to.
 func (s *stack) partAt(x float64) int {
@@ -195,7 +200,7 @@ func (s *stack) terms(cs *chainStep, mem *slab) terms {
 		v := mem.take(n)
 		end(i, xi, 1, v)
 		p := &s.parts[i]
-		if !(f.u*s.thickM(p) < heldBallBiot*cs.layers[p.layer].KWmK) {
+		if !(f.u*s.thickM(p) < heldFrom*cs.layers[p.layer].KWmK) {
 			te.held = append(te.held, holding{v: v, group: f.group, share: 1})
 			return
 		}

@@ -245,6 +245,10 @@ func (w *lineSampler) follow() (low, high extreme, ok bool) {
 	if low.c > high.c {
 		low, high = high, low
 	}
+	if k.turns == 1 && high.c-low.c <= flatK { // faces that meet the same: the underside, as among nodes
+		low = extreme{w.now.first, coord{xs[0]}}
+		high = low
+	}
 	if k.turns == 0 {
 		return low, high, high.c-low.c > clearK
 	}
@@ -261,7 +265,7 @@ func (w *lineSampler) look() (low, high extreme) {
 	st := w.sg.step
 	w.fill()
 	low, high, turns := w.ends()
-	w.known = profile{}
+	w.known, w.near.move = profile{}, 0
 	lower, upper, clear := w.gradients()
 	inside := func(e extreme) bool { return !slices.Contains(w.b.nodes.x[0], e.x[0]) }
 	rise := w.b.buf[len(w.b.buf)-1] - w.b.buf[0]

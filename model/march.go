@@ -122,7 +122,7 @@ func (s *solver) marchOnce(e effort) (*History, *marched) {
 	s.main, s.chain = f, nil
 	t := 0.0
 	for i := range s.steps {
-		span := Span{Step: &s.steps[i], StartS: t}
+		span := Span{Step: &s.steps[i], StartS: t, Method: Marched}
 		low, _ := f.state.span()
 		s.airQuestion(&s.steps[i], low)
 		if len(s.refused) > 0 {

@@ -11,6 +11,7 @@ type nearby struct {
 	st    *tensorStep // that all belongs to; nil: nothing is known
 	x     float64     // the place
 	h     float64     // where the extreme was found last, from x
+	move  float64     // how far the extreme moved from the last sample to the one before
 	known int         // how many of modes are known
 	modes [maxDegrees]series
 	s, w  series // of the response to the medium
@@ -35,17 +36,20 @@ const nearK = 1e-6
 // inner follows the extreme inside a field that has one; sign 1: it is the coldest. last is where it was found last, and is kept up to date.
 func (w *lineSampler) inner(sign float64, last *float64) (c, x float64) {
 	if c, x, ok := w.near.extreme(w, sign); ok {
-		*last = x
+		w.near.move, *last = x-*last, x
 		return c, x
 	}
 	w.polynomials()
 	xs := w.b.nodes.x[0]
 	v := valley{lo: xs[0], hi: xs[len(xs)-1], start: *last}
+	if x := *last + w.near.move; v.lo < x && x < v.hi {
+		v.start = x
+	}
 	c, x = v.newton(w.f.axes[0].base, w.line[:w.lineLen], sign)
 	if math.Abs(x-*last) < nearMove {
 		w.near.settle(w, x)
 	}
-	*last = x
+	w.near.move, *last = x-*last, x
 	return c, x
 }
 

@@ -76,6 +76,9 @@ func secularRoot(d, v2 []float64, rho, sum float64, j int) (from int, delta floa
 	if j < n-1 {
 		width = d[j+1] - d[j]
 	}
+	if n == 1 {
+		return 0, width
+	}
 	from = j
 	lo, hi := 0.0, width
 	x := width / 2
@@ -96,7 +99,7 @@ func secularRoot(d, v2 []float64, rho, sum float64, j int) (from int, delta floa
 		if first := smallRoot(a, b, rest); first > lo && first < hi {
 			x = first
 		}
-	} else if n > 1 {
+	} else {
 		x = width * 0.999999
 	}
 	for it := 0; it < 80; it++ {

@@ -23,6 +23,15 @@ var (
 	Shapes = []*Shape{Slab, Cylinder, Sphere, ShortCylinder, Bar, Brick, Spheroid, LayeredSlab, Stirred}
 )
 
+// IrregularPieces is the guide to the shape that stands for a piece that has none of them. What it says of spheres and cylinders is held by a test
+// against spheroids of 1:1 to 1:3; that a shape which contains another stays behind it follows from the comparison principle.
+const IrregularPieces = "A piece that is none of these shapes: take the thickest section that fits into it, and the fewest faces through which heat passes; what is left out " +
+	"then makes the prediction slow, which is the safe side for heating and for chilling. " +
+	"Slow: a slab of its smallest thickness at the thickest place, or a long cylinder of its smaller diameter (a spheroid of the same diameter is ahead of it). " +
+	"Near: a spheroid with its length as thickness and its smaller diameter, for eggs, potatoes and boned joints; a brick or short cylinder that the piece fits into. " +
+	"Fast, on the unsafe side: a sphere of its smaller diameter, or any shape that fits into the piece. " +
+	"Of pieces that differ take the largest in the load. A bone, a tin or a liquid core is a food of its own: a layer, not a correction."
+
 // Surface is a kind of surroundings: the word of the column Surroundings.
 type Surface struct {
 	Name, Help string
@@ -38,10 +47,10 @@ type Surface struct {
 var (
 	Film = &Surface{Name: "film", Needs: []string{"Film coefficient"}, May: []string{"Air speed", "Relative humidity", "Wrap resistance"},
 		Help: "a film coefficient typed by you: it stands for everything that happens at the surface"}
-	StillAir = &Surface{Name: "still air", May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"}, film: stillAir,
-		Help: "air moved only by its own warmth; convection only, radiation is left out"}
-	MovingAir = &Surface{Name: "moving air", Needs: []string{"Air speed"}, May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"}, film: movingAir,
-		Help: "air blown over the food; convection only, radiation is left out"}
+	StillAir = &Surface{Name: "still air", May: []string{"Film coefficient", "Relative humidity", "Radiating temperature", "Emissivity", "Surface", "Wrap resistance"}, film: stillAir,
+		Help: "air moved only by its own warmth; the film follows the surface (a typed one stands for convection alone), radiation counts with Radiating temperature, evaporation with Surface wet"}
+	MovingAir = &Surface{Name: "moving air", Needs: []string{"Air speed"}, May: []string{"Film coefficient", "Relative humidity", "Radiating temperature", "Emissivity", "Surface", "Wrap resistance"}, film: movingAir,
+		Help: "air blown over the food; as still air, and never less than it"}
 	WaterBath = &Surface{Name: "water bath", May: []string{"Film coefficient", "Wrap resistance"},
 		film: stated(waterBathW, "stated low: bagged and rolled joints in water were measured at a few tens of W/m²K (fitted to James & James 2002, Meat Refrigeration, table 16.7), textbooks give 50 to 100 for liquids left still"),
 		Help: "water left still; a low film is taken unless you type one"}
@@ -51,9 +60,9 @@ var (
 	BoilingWater = &Surface{Name: "boiling water", May: []string{"Film coefficient", "Wrap resistance"},
 		film: stated(1000, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 (Çengel, Heat Transfer, typical values): food conducts so badly that more makes no difference"),
 		Help: "water at the boil"}
-	Steam = &Surface{Name: "steam", May: []string{"Film coefficient", "Wrap resistance"},
+	Steam = &Surface{Name: "steam", May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"},
 		film: stated(steamW, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 for pure condensing steam (Çengel, Heat Transfer, typical values); air in the steam lowers it strongly"),
-		Help: "condensing steam, air vented: the temperature is that of the steam's own pressure"}
+		Help: "condensing steam, air vented; with a relative humidity below 100 % steam with air in it, which condenses up to its dew point"}
 	ContactPlate = &Surface{Name: "contact plate", Needs: []string{"Wrap resistance"},
 		Help: "a plate pressed on; its contact goes into Wrap resistance"}
 	Held      = &Surface{Name: "held", Help: "the surface itself is kept at the temperature"}

@@ -264,47 +264,31 @@ func (s *skin) direct(surfaceC float64, a *around) float64 {
 	return w
 }
 
-// through finds the temperature of the outer surface, °C, and the heat, W/m², that passes the resistances beneath it.
+// through finds the temperature of the outer surface, °C, and the heat, W/m², that arrives there and passes the resistances beneath it.
+// The heat falls as the outer surface warms, so that the answer lies between the food's surface and what would be if nothing changed.
 func (s *skin) through(surfaceC float64, a *around) (outerC, w float64) {
-	short := func(t float64) float64 { return s.outer(t, a) - (t-surfaceC)/s.seriesR } // falls with t
-	lo, hi := surfaceC, surfaceC
-	at := short(surfaceC)
-	for step := 8.0; ; step *= 2 { // brackets the root
-		if at > 0 {
-			lo, hi = hi, hi+step
-			if short(hi) <= 0 {
-				break
-			}
-		} else {
-			lo, hi = lo-step, lo
-			if short(lo) > 0 {
-				break
-			}
-		}
-		if step > 4096 {
+	r := s.seriesR
+	x := surfaceC // an end of the bracket, with what is short there as a temperature: the answer is no further away
+	w = s.outer(x, a)
+	fx := r * w
+	y := x + fx
+	w = s.outer(y, a)
+	fy := surfaceC + r*w - y
+	for range 100 { // false position, halving what stays (Illinois)
+		if math.Abs(fy) < 1e-12*(1+math.Abs(y)) || x == y {
 			break
 		}
-	}
-	t := (lo + hi) / 2
-	for range 100 {
-		f := short(t)
-		if f > 0 {
-			lo = t
+		z := y - fy*(y-x)/(fy-fx)
+		w = s.outer(z, a)
+		fz := surfaceC + r*w - z
+		if (fz > 0) != (fy > 0) {
+			x, fx = y, fy
 		} else {
-			hi = t
+			fx /= 2
 		}
-		const d = 1e-4
-		next := t - f*2*d/(short(t+d)-short(t-d))
-		if !(next > lo && next < hi) {
-			next = (lo + hi) / 2
-		}
-		if math.Abs(next-t) < 1e-12*(1+math.Abs(t)) || hi-lo < 1e-12 {
-			t = next
-			break
-		}
-		t = next
+		y, fy = z, fz
 	}
-	return t, (t - surfaceC) / s.seriesR
+	return y, w
 }
 
 // flux gives the heat that flows into the food, W/m², and its slope by the surface temperature, W/(m²·K), tau s after the start of the
@@ -335,7 +319,14 @@ func (s *skin) exact(surfaceC, tau float64) (w, slope float64) {
 // slopeK is half of the difference that a slope is taken over, K.
 const slopeK = 1e-3
 
-// sloped takes the slope from two temperatures d K to each side.
+// sloped takes the slope from two temperatures d K to each side, of the outer surface where something lies in series beneath it.
 func (s *skin) sloped(surfaceC float64, a *around, d float64) (w, slope float64) {
-	return s.direct(surfaceC, a), (s.direct(surfaceC+d, a) - s.direct(surfaceC-d, a)) / (2 * d)
+	outerC := surfaceC
+	if s.seriesR > 0 {
+		outerC, w = s.through(surfaceC, a)
+	} else {
+		w = s.outer(surfaceC, a)
+	}
+	slope = (s.outer(outerC+d, a) - s.outer(outerC-d, a)) / (2 * d)
+	return w, slope / (1 - s.seriesR*slope)
 }

@@ -138,12 +138,13 @@ func (s *solver) layOut() {
 	for i := range s.steps {
 		s.settle = min(s.settle, s.steps[i].DurationS/4)
 	}
+	usual := &filmCase{shape: s.product.Shape, size: s.product.Size, foodC: 50, mediumC: 20, airMS: 1}
 	for a := 0; a < s.used; a++ {
 		s.foMin[a] = alpha * s.settle / (s.radii[a] * s.radii[a])
 		for i := range s.steps {
 			for _, f := range s.faces[a] {
 				e := s.steps[i].on(f)
-				u := e.filmUsed(nil, &filmCase{shape: s.product.Shape, size: s.product.Size, foodC: 50, mediumC: 20, airMS: 1})
+				u := e.filmUsed(nil, usual)
 				s.sharp[a] = s.sharp[a] || u.TotalW*s.radii[a]/q.KWmK > sharpBiot
 			}
 		}
@@ -208,7 +209,9 @@ func (s *solver) fewer(a, more int) int {
 	switch {
 	case s.kinds[a] == lumped:
 		return 1
-	case s.product.Shape == LayeredSlab: // of layers with few polynomials one less
+	case s.ball != nil && a == 1:
+		return min(n-2, s.fewer(0, more))
+	case s.product.Shape == LayeredSlab || s.ball != nil: // of layers with few polynomials one less
 		return n * 4 / 5
 	case s.kinds[a] == planeFull:
 		return n - 4
@@ -276,7 +279,7 @@ func (s *solver) run(more int) *History {
 	t := 0.0
 	lo, hi := s.product.StartC, s.product.StartC // of the food at the start of the step
 	for i := range s.steps {
-		span := Span{Step: &s.steps[i], StartS: t}
+		span := Span{Step: &s.steps[i], StartS: t, Method: ExactInTime}
 		s.airQuestion(&s.steps[i], lo)
 		if len(s.refused) > 0 {
 			return nil
@@ -299,13 +302,12 @@ func (s *solver) run(more int) *History {
 
 // build runs the chain, or only its last step if a field that holds the others is given; a new field lies in mem.
 func (s *solver) build(axes [3]*axis, nd *nodes, f field, mem *slab) field {
+	if m, ok := f.(*modal); ok {
+		m.run(s.chain[len(s.chain)-1])
+		return m
+	}
 	if fn := s.functions(axes); fn != nil {
-		m, ok := f.(*modal)
-		if ok {
-			m.run(s.chain[len(s.chain)-1])
-			return m
-		}
-		m = newModal(fn, nd, s.product.StartC, mem, &s.tmp.call)
+		m := newModal(fn, nd, s.product.StartC, mem, &s.tmp.call)
 		for _, cs := range s.chain {
 			m.run(cs)
 		}
@@ -682,7 +684,7 @@ func (s *solver) estimate(h *History, more int) {
 	case one && s.used == 1 && (s.kinds[0] == planeHalf || s.kinds[0] == planeFull):
 		worst = s.tails(h, f)
 	default:
-		worst = s.again(h, more) / fewerWorse
+		worst = s.again(h, more) / s.worse()
 	}
 	h.ErrorK = max(worst, 1e-5)
 	for _, cs := range s.chain {
@@ -805,6 +807,14 @@ func (s *solver) turns(step int) []float64 {
 // reference problems, and in random chains of spheres and bricks the true error came up to two thirds of the difference.
 const fewerWorse = 2
 
+// worse is what the difference to the solution with fewer polynomials is divided by.
+func (s *solver) worse() float64 {
+	if s.ball != nil {
+		return 4
+	}
+	return fewerWorse
+}
+
 // forget drops what was made for the nodes.
 func (f *tensor) forget() {
 	for _, st := range f.steps {
@@ -897,7 +907,10 @@ func (s *solver) method() string {
 	}
 	form := "polynomials through the food"
 	if f, ok := s.main.(*modal); ok {
-		n, form = fmt.Sprint(f.fn.size()), "polynomials on the whole of it"
+		n, form = fmt.Sprint(f.fn.size()), "polynomials through its layers"
+		if s.ball != nil {
+			form = "polynomials on the ball that the spheroid is mapped to"
+		}
 	}
 	if _, ok := s.main.(*product); ok {
 		form = "polynomials, as products of axes"

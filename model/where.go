@@ -13,7 +13,7 @@ func (p *Product) Where(at Place) string {
 		return "anywhere: it is stirred"
 	}
 	for _, pt := range p.Points {
-		if pt.Name != "" && at.near(pt.Place) {
+		if pt.Name != "" && at.near(pt.Place) && p.layerAt(at.UpM) == p.layerAt(pt.UpM) {
 			return pt.Name
 		}
 	}
@@ -28,6 +28,10 @@ func (p *Product) Lies(at Place) string {
 		return "anywhere: it is stirred"
 	case Cylinder, Sphere:
 		return p.round(math.Abs(up), z.DiameterM/2)
+	case Spheroid:
+		return p.aboutAxis(at)
+	case LayeredSlab:
+		return p.inLayers(up)
 	}
 	if at.near(Place{}) {
 		return "centre"
@@ -38,7 +42,7 @@ func (p *Product) Lies(at Place) string {
 		half, across = z.LengthM/2, z.DiameterM/2
 	case Brick:
 		along = z.LengthM / 2
-	case Spheroid, LayeredSlab, Slab, nil:
+	case Slab, nil:
 		across = math.Inf(1)
 	}
 	var faces, parts []string
@@ -114,6 +118,85 @@ func (p *Product) round(r, most float64) string {
 		return p.far(most-r) + " under the surface"
 	}
 	return p.far(r) + " from " + middle
+}
+
+// aboutAxis is a place in a spheroid: by its distances from the axis and from the plane of the equator.
+func (p *Product) aboutAxis(at Place) string {
+	m := spheroidMap{a: p.Size.ThicknessM / 2, b: p.Size.DiameterM / 2}
+	up, across := math.Abs(at.UpM), math.Abs(at.AcrossM)
+	if up < sameM && across < sameM {
+		return "centre"
+	}
+	where := p.far(across) + " from the axis, " + p.far(up) + " from the plane of the equator"
+	switch depth := m.depthM(at); {
+	case across < sameM && m.a-up < sameM:
+		return "surface, at a pole"
+	case up < sameM && m.b-across < sameM:
+		return "surface, at the equator"
+	case depth < sameM:
+		return "surface, " + where
+	case depth < 1e-3 && across < sameM:
+		return p.far(depth) + " under the surface, at a pole"
+	case depth < 1e-3 && up < sameM:
+		return p.far(depth) + " under the surface, at the equator"
+	case depth < 1e-3:
+		return p.far(depth) + " under the surface, " + where
+	case across < sameM:
+		return "on the axis, " + p.far(up) + " from the centre"
+	case up < sameM:
+		return "in the plane of the equator, " + p.far(across) + " from the centre"
+	}
+	return where
+}
+
+// depthM is about how far a place lies under the surface, m: exact on it, on the axis and in the plane of the equator.
+func (s *spheroidMap) depthM(at Place) float64 {
+	x := s.coord(at)
+	out := s.place(coord{1, x[1]})
+	return (1 - x[0]) / math.Hypot(out.UpM/(s.a*s.a), out.AcrossM/(s.b*s.b)) // by the slope of ρ along the normal
+}
+
+// inLayers is a height in a layered slab: as in a slab, with the layer, or the joint and on which side of it.
+func (p *Product) inLayers(up float64) string {
+	layer := func(i int) string {
+		if f := p.Layers[i].Food; f != nil {
+			return fmt.Sprintf("layer %d (%s)", i+1, f.Name)
+		}
+		return fmt.Sprintf("layer %d", i+1)
+	}
+	half := p.Size.ThicknessM / 2
+	switch {
+	case half-up < sameM:
+		return "top surface"
+	case half+up < sameM:
+		return "underside"
+	}
+	in, height := p.layerAt(up), half
+	for i := 0; i < len(p.Layers)-1; i++ {
+		height -= p.Layers[i].ThicknessM // of the joint below layer i
+		if math.Abs(up-height) < sameM && (in == i || in == i+1) {
+			return fmt.Sprintf("at the joint between %s and %s, in layer %d", layer(i), layer(i+1), in+1)
+		}
+	}
+	if math.Abs(up) < sameM {
+		return "centre, in " + layer(in)
+	}
+	if half-up < 1e-3 {
+		return p.far(half-up) + " under the top, in " + layer(in)
+	}
+	return p.far(half+up) + " above the underside, in " + layer(in)
+}
+
+// layerAt gives the layer that a height belongs to, from the top; 0 where there are none.
+func (p *Product) layerAt(up float64) int {
+	height := p.Size.ThicknessM / 2
+	for i := 0; i < len(p.Layers)-1; i++ {
+		height -= p.Layers[i].ThicknessM
+		if !below(up, height, bondM) {
+			return i
+		}
+	}
+	return max(len(p.Layers)-1, 0)
 }
 
 // sameM is how near two places are one, m: no probe is placed better.

@@ -76,3 +76,47 @@ func TestWhereInInches(t *testing.T) {
 		})
 	}
 }
+
+func TestWhereInSpheroidsAndLayers(t *testing.T) {
+	egg := Product{Shape: Spheroid, Size: Size{ThicknessM: 0.06, DiameterM: 0.04}}
+	pastry, filling := &Material{Name: "pastry"}, &Material{Name: "filling"}
+	pie := Product{Shape: LayeredSlab, Size: Size{ThicknessM: 0.046}, Layers: []Layer{{Food: pastry, ThicknessM: 0.006, BelowM2KW: 0.01}, {Food: filling, ThicknessM: 0.034}, {Food: pastry, ThicknessM: 0.006}}}
+	even := Product{Shape: LayeredSlab, Size: Size{ThicknessM: 0.04}, Layers: []Layer{{Food: pastry, ThicknessM: 0.02}, {Food: filling, ThicknessM: 0.02}}}
+	for _, x := range []struct {
+		name string
+		p    *Product
+		at   Place
+		want string
+	}{
+		{"centre", &egg, Place{}, "centre"},
+		{"pole", &egg, Place{UpM: -0.03}, "surface, at a pole"},
+		{"equator", &egg, Place{AcrossM: 0.02}, "surface, at the equator"},
+		{"surface between", &egg, Place{UpM: 0.018, AcrossM: 0.016}, "surface, 16 mm from the axis, 18 mm from the plane of the equator"},
+		{"axis", &egg, Place{UpM: 0.011}, "on the axis, 11 mm from the centre"},
+		{"plane of the equator", &egg, Place{AcrossM: 0.009}, "in the plane of the equator, 9 mm from the centre"},
+		{"within", &egg, Place{UpM: 0.011, AcrossM: 0.007}, "7 mm from the axis, 11 mm from the plane of the equator"},
+		{"just under a pole", &egg, Place{UpM: 0.0294}, "0.6 mm under the surface, at a pole"},
+		{"just under the equator", &egg, Place{AcrossM: 0.0195}, "0.5 mm under the surface, at the equator"},
+		{"top of a pie", &pie, Place{UpM: 0.023}, "top surface"},
+		{"underside of a pie", &pie, Place{UpM: -0.023}, "underside"},
+		{"lid", &pie, Place{UpM: 0.02}, "43 mm above the underside, in layer 1 (pastry)"},
+		{"joint, the side of the filling", &pie, Place{UpM: 0.017}, "at the joint between layer 1 (pastry) and layer 2 (filling), in layer 2"},
+		{"joint, the side of the lid", &pie, Place{UpM: 0.017 + beyondM}, "at the joint between layer 1 (pastry) and layer 2 (filling), in layer 1"},
+		{"joint below, the side of the base", &pie, Place{UpM: -0.017 - beyondM}, "at the joint between layer 2 (filling) and layer 3 (pastry), in layer 3"},
+		{"joint below, the side of the filling", &pie, Place{UpM: -0.017}, "at the joint between layer 2 (filling) and layer 3 (pastry), in layer 2"},
+		{"centre of a pie", &pie, Place{}, "centre, in layer 2 (filling)"},
+		{"filling", &pie, Place{UpM: 0.003}, "26 mm above the underside, in layer 2 (filling)"},
+		{"joint at the centre", &even, Place{}, "at the joint between layer 1 (pastry) and layer 2 (filling), in layer 1"},
+		{"just under the top of a pie", &pie, Place{UpM: 0.0227}, "0.3 mm under the top, in layer 1 (pastry)"},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			if got := x.p.Where(x.at); got != x.want {
+				t.Errorf("%q, want %q", got, x.want)
+			}
+		})
+	}
+	pie.Points = []Point{{Name: "probe in the filling", Place: Place{UpM: 0.017}}}
+	if a, b := pie.Where(Place{UpM: 0.017}), pie.Where(Place{UpM: 0.017 + beyondM}); a != "probe in the filling" || b == a {
+		t.Errorf("the two sides of a joint: %q and %q", a, b)
+	}
+}

@@ -43,16 +43,13 @@ func (s *solver) layers(n int) *stack {
 		}
 		fo := (alpha*s.settle + far*far/8) / (r * r)
 		d := need(fo, s.sharp[0] && far < 1e-9)
-		switch {
-		case fo > 1000: // all but one temperature
-			return 2
-		case fo > 30:
+		if alpha*s.settle > 1000*r*r { // a straight line, all but a parabola: a foil
 			return 3
 		}
 		if p.kind == planeFull {
 			d *= fullDegrees
 		}
-		return min(max(int(math.Ceil(share*max(d, 5))), 3), maxDegrees)
+		return min(int(math.Ceil(share*max(d, 5))), maxDegrees)
 	})
 }
 
@@ -62,7 +59,7 @@ const fullDegrees = 1.85
 // ballDegrees is the number of polynomials along ρ (axis 0), that grows with the layer a change of surroundings has warmed as for any axis, and
 // along μ (axis 1), that grows with how far the spheroid is from a sphere. The numbers were fitted to spheroids of 1:4 to 3:1.
 func (s *solver) ballDegrees(a, more int) int {
-	n := 3 + 1.8*math.Pow(s.foMin[0], -0.25)
+	n := 3 + 1.9*math.Pow(s.foMin[0], -0.25)
 	if s.sharp[0] {
 		n += 5
 	}
@@ -71,7 +68,7 @@ func (s *solver) ballDegrees(a, more int) int {
 		return min(int(math.Round(along)), mostBall)
 	}
 	ratio := max(s.ball.a, s.ball.b) / min(s.ball.a, s.ball.b)
-	return min(int(math.Round((3.5+2.2*ratio)*(1+0.1*float64(more)))), int(math.Round(along)), mostBall)
+	return min(int(math.Round(3.5+2.2*ratio))+more, int(math.Round(along)), mostBall)
 }
 
 // mostBall is the most polynomials along an axis of a spheroid: their number on the whole grows with its square, the time with its sixth power.

@@ -26,8 +26,8 @@ func (x *sheet) basis() {
 			d.text(say("bound", duration(p.History.BoundFromS, nearest), p.History.Bound))
 		}
 	}
-	if p.Low != nil {
-		d.text(x.lowSentence())
+	for _, r := range p.Further {
+		d.text(x.runSentence(r))
 	}
 	d.text(say("rounding"))
 	x.knownAnswers()
@@ -41,19 +41,21 @@ func significant(v float64) string {
 	return plain(v, max(0, min(9, 5-int(math.Floor(math.Log10(math.Abs(v)))))), nearest)
 }
 
-// lowSentence sets the two runs side by side at the deciding limit.
-func (x *sheet) lowSentence() string {
-	low, usual := 0, 0
+// runSentence sets a further run beside the usual one at the deciding limit.
+func (x *sheet) runSentence(r rules.Run) string {
+	further, usual := 0, 0
 	for i := range x.p.Judgement.Findings {
-		if f := &x.p.Judgement.Findings[i]; f.Verdict != rules.NotApplicable && f.LowConductivity {
-			low++
-		} else if f.Verdict != rules.NotApplicable {
+		switch f := &x.p.Judgement.Findings[i]; {
+		case f.Verdict == rules.NotApplicable:
+		case f.Run == r.Name:
+			further++
+		case f.Run == "":
 			usual++
 		}
 	}
 	end := x.p.History.EndS()
-	return say("low", low, usual, x.decides.placeName, x.head.temperature(x.p.History.At(x.decides.place, end), nearest),
-		x.head.temperature(x.p.Low.At(x.decides.place, end), nearest))
+	return say("also run "+r.Name, further, usual, x.decides.placeName, x.head.temperature(x.p.History.At(x.decides.place, end), nearest),
+		x.head.temperature(r.History.At(x.decides.place, end), nearest))
 }
 
 // factors are the critical factors with the values used and where they come from.

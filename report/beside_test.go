@@ -23,11 +23,14 @@ func TestBeside(t *testing.T) {
 		{"a limit that does not apply", rules.Met, func(p *Product) {}, []string{"3 met; 1 did not apply: Hot holding."}, []string{"carry-over"}},
 		{"a clock that never started comes first", rules.Met, func(p *Product) { p.Judgement.Findings[1].Verdict = rules.NotApplicable },
 			[]string{"2 met; 2 did not apply: Chill, first part, Hot holding."}, nil},
-		{"an Until that was not reached", rules.NotMet, func(p *Product) { no := false; p.History.Spans[0].Reached, p.Low.Spans[0].Reached = &no, &no },
+		{"an Until that was not reached", rules.NotMet, func(p *Product) {
+			no := false
+			p.History.Spans[0].Reached, p.Further[0].History.Spans[0].Reached = &no, &no
+		},
 			[]string{"The step Roast did not reach its Until within its longest duration (1 h 30 min)."}, nil},
 		{"an Until that was reached at once", rules.Met, func(p *Product) {
 			yes := true
-			for _, h := range []*model.History{p.History, p.Low} {
+			for _, h := range []*model.History{p.History, p.Further[0].History} {
 				h.Spans[1].Reached, h.Spans[1].EndS = &yes, h.Spans[1].StartS
 			}
 		}, []string{"The step Rest on the bench ended at once: its Until was already reached when it began."}, nil},

@@ -44,9 +44,9 @@ var triggers = []trigger{
 	{"chill medium raised to the freezing point", stepsWhere(func(sp *model.Span) bool { return sp.MediumFromC != nil })},
 	{"crossing freezing", freezing},
 	{"properties from composition", func(h *Head, p *Product) ([]any, bool) { return nil, p.Product.Food != nil && p.Product.Food.Composed }},
-	{"conductivity scatter", func(h *Head, p *Product) ([]any, bool) { return nil, p.Low != nil }},
+	{"conductivity scatter", func(h *Head, p *Product) ([]any, bool) { return nil, p.run(rules.LowConductivity) != nil }},
 	{"thick food may flow", func(h *Head, p *Product) ([]any, bool) {
-		return nil, p.Product.Food != nil && p.Product.Food.Flow == model.FlowsThick
+		return nil, p.run(rules.WellMixed) != nil
 	}},
 	{"idealised shape", func(h *Head, p *Product) ([]any, bool) {
 		if p.Product.Shape == nil || p.History == nil || p.History.Recorded || p.Product.Shape == model.Stirred {
@@ -179,7 +179,7 @@ func coarse(h *Head, p *Product) ([]any, bool) {
 func uncited(h *Head, p *Product) ([]any, bool) {
 	var names []string
 	for _, f := range p.Judgement.Findings {
-		if f.Limit != nil && bare(f.Limit) && f.Verdict != rules.NotApplicable && !f.LowConductivity {
+		if f.Limit != nil && bare(f.Limit) && f.Verdict != rules.NotApplicable {
 			names = append(names, f.Limit.Name)
 		}
 	}

@@ -82,8 +82,12 @@ func TestCautions(t *testing.T) {
 		{"below the freezing point", func(_ *Head, p *Product) { p.Samples.Coldest[2] = -1.2 }, "crossing freezing, " + always, "−1.2 °C"},
 		{"above the freezing point, below 0 °C", func(_ *Head, p *Product) { p.Samples.Coldest[2] = -0.5 }, always, ""},
 		{"no freezing point known, below 0 °C", func(_ *Head, p *Product) { p.Samples.Coldest[2], p.Product.Food.FreezingC = -0.5, nil }, "crossing freezing, " + always, ""},
-		{"composed, with a second run", func(_ *Head, p *Product) { p.Product.Food.Composed, p.Low = true, p.History }, "properties from composition, conductivity scatter, " + always, "±15 %"},
-		{"thick food", func(_ *Head, p *Product) { p.Product.Food.Flow = model.FlowsThick }, "thick food may flow, " + always, ""},
+		{"composed, with a second run", func(_ *Head, p *Product) {
+			p.Product.Food.Composed, p.Further = true, []rules.Run{{Name: rules.LowConductivity, History: p.History}}
+		}, "properties from composition, conductivity scatter, " + always, "±15 %"},
+		{"thick food", func(_ *Head, p *Product) {
+			p.Further = []rules.Run{{Name: rules.WellMixed, History: p.History}}
+		}, "thick food may flow, " + always, "as well mixed"},
 		{"no probe named", func(_ *Head, p *Product) { p.History.Points = p.History.Points[:1] }, always + ", probe place unknown", ""},
 		{"date order by hand", func(h *Head, _ *Product) { h.Items = []Item{{Item: "Date order", Value: "day month year"}} }, always + ", dates set by hand", "day month year"},
 		{"carried by a finding", func(_ *Head, p *Product) {

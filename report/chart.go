@@ -921,12 +921,16 @@ func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *mo
 			f.lines = append(f.lines, l)
 		}
 	}
-	if p.Low != nil {
-		on, name := p.Low, say("line low")
-		if d.history == p.Low {
-			on, name = p.History, say("line usual")
+	for _, r := range p.Further {
+		if d.history != r.History {
+			course(say("line "+r.Name), r.History, d.place)
 		}
-		course(name, on, d.place)
+	}
+	switch name := p.nameOf(d.history); {
+	case name != "" && p.run(rules.WellMixed) != nil:
+		course(say("line conducting"), p.History, d.place)
+	case name != "":
+		course(say("line usual"), p.History, d.place)
 	}
 }
 

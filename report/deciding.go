@@ -36,10 +36,7 @@ func tightness(f *rules.Finding) float64 {
 // madeByUntil is the step whose end sets a finding's margin in K: it ends when the slowest place reaches a temperature that lies
 // just that far beyond the limit's own. Such a margin says what was typed in Until, and nothing of the food. "" if there is none.
 func (p *Product) madeByUntil(f *rules.Finding) string {
-	h := p.History
-	if f.LowConductivity && p.Low != nil {
-		h = p.Low
-	}
+	h := p.runOf(f)
 	if h == nil || f.Limit == nil || f.Verdict != rules.Met || !finite(f.MarginK) {
 		return ""
 	}
@@ -151,8 +148,8 @@ func (p *Product) decides() *deciding {
 		}
 	}
 	f := d.finding
-	if f != nil && f.LowConductivity && p.Low != nil {
-		d.history = p.Low
+	if f != nil && p.runOf(f) != nil {
+		d.history = p.runOf(f)
 	}
 	if len(d.history.Points) > 0 {
 		d.place, d.placeName = d.history.Points[0].Place, d.history.Points[0].Name
@@ -160,7 +157,7 @@ func (p *Product) decides() *deciding {
 	if f != nil && f.Place != nil {
 		d.place, d.placeName = *f.Place, f.PlaceName
 	}
-	if p.Product.Shape == model.Stirred {
+	if p.Product.Shape == model.Stirred || d.history != p.History && d.history == p.run(rules.WellMixed) {
 		d.placeName = say("anywhere")
 	}
 	if d.placeName == "" || d.placeName == "every point" {

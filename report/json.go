@@ -118,6 +118,7 @@ type (
 		Why             string          `json:"why"`
 		Notes           []string        `json:"notes"`
 		LowConductivity bool            `json:"low_conductivity"`
+		WellMixed       bool            `json:"well_mixed,omitempty"` // of a food that may mix by itself
 	}
 	groupJSON struct {
 		Group     string `json:"group"`
@@ -492,7 +493,7 @@ func findingsOf(fs []rules.Finding) []findingJSON {
 		one := findingJSON{Level: f.Level, Verdict: f.Verdict.String(), Value: tenFigures(f.Value), Required: tenFigures(f.Required), Unit: f.Unit,
 			MarginK: fixedNumber(f.MarginK, 4), MarginS: fixedNumber(f.MarginS, 4), AtS: exactNumber(f.AtS), Place: f.PlaceName,
 			ClockStart: exactNumber(f.ClockStartS), ClockEnd: exactNumber(f.ClockEndS), Cells: cellNames(f.Cells), Why: f.Why,
-			Notes: append([]string{}, f.Notes...), LowConductivity: f.LowConductivity}
+			Notes: append([]string{}, f.Notes...), LowConductivity: f.Run == rules.LowConductivity, WellMixed: f.Run == rules.WellMixed}
 		if f.Place != nil {
 			one.AtMM = appendPlace(nil, *f.Place)
 		}

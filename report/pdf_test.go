@@ -52,9 +52,11 @@ func roast(t testing.TB, shape *model.Shape, v rules.Verdict) *Product {
 	if p.History, err = model.Solve(p.Product, p.Steps, model.Options{}); err != nil {
 		t.Fatal(err)
 	}
-	if p.Low, err = model.Solve(p.Product, p.Steps, model.Options{ConductivityFactor: 0.9}); err != nil {
+	low, err := model.Solve(p.Product, p.Steps, model.Options{ConductivityFactor: 0.9})
+	if err != nil {
 		t.Fatal(err)
 	}
+	p.Further = []rules.Run{{Name: rules.LowConductivity, History: low}}
 	p.Samples = p.History.Sample(60)
 	p.Judgement = roastJudgement(p, v)
 	return p
@@ -86,7 +88,7 @@ func roastJudgement(p *Product, v rules.Verdict) rules.Judgement {
 			AtS: ptr(12000.), Place: &model.Place{}, PlaceName: "centre", ClockStartS: ptr(6800.), ClockEndS: ptr(12000.), Cells: []cell.Ref{first.At}, Why: "The place falls to 70 °F in 101 min.",
 			Cautions: []string{"lethality without floor"}},
 		{Limit: second, Level: "must", Verdict: v, Value: &hot, Required: second.ToC, Unit: "°C", MarginK: ptr(*second.ToC - hot), AtS: ptr(end), Place: &model.Place{}, PlaceName: "centre", Cells: []cell.Ref{second.At}, Why: "The stage ends too early.",
-			Notes: []string{"rose above From again at 1 h 05 min"}, LowConductivity: v == rules.NotMet},
+			Notes: []string{"rose above From again at 1 h 05 min"}, Run: map[bool]string{true: rules.LowConductivity}[v == rules.NotMet]},
 		{Limit: lid, Level: "must", Verdict: rules.NotApplicable, Why: "The process has no stage hold hot."},
 	}, Groups: []rules.GroupFinding{{Group: "Chilling", AnyOf: true, Verdict: v, DecidedBy: "Chill to store"}}}
 }
@@ -182,7 +184,7 @@ func TestProductPDF(t *testing.T) {
 			if p.History, err = model.Solve(p.Product, p.Steps, model.Options{}); err != nil {
 				t.Fatal(err)
 			}
-			p.Low, p.Samples = nil, p.History.Sample(300)
+			p.Further, p.Samples = nil, p.History.Sample(300)
 			fs := p.Judgement.Findings
 			for i := range 36 {
 				f := fs[i%3]
@@ -192,7 +194,7 @@ func TestProductPDF(t *testing.T) {
 				p.Judgement.Findings = append(p.Judgement.Findings, f)
 			}
 		}, []string{"12 steps"}},
-		{"no history", model.Slab, rules.CannotTell, func(h *Head, p *Product) { p.History, p.Low, p.Samples = nil, nil, model.Samples{} }, []string{"CANNOT TELL"}},
+		{"no history", model.Slab, rules.CannotTell, func(h *Head, p *Product) { p.History, p.Further, p.Samples = nil, nil, model.Samples{} }, []string{"CANNOT TELL"}},
 		{"no limits", model.Slab, rules.CannotTell, func(h *Head, p *Product) { p.Judgement = rules.Judgement{Why: "no limit judged"} }, []string{"no limit judged"}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -225,17 +227,17 @@ func TestProductPDF(t *testing.T) {
 // A finding of the second run is decided in a step of the second run, which may end later than the first.
 func TestStepOfSecondRun(t *testing.T) {
 	p := roast(t, model.Slab, rules.NotMet)
-	late := *p.Low
-	late.Spans = append([]model.Span(nil), p.Low.Spans...)
+	late := *p.run(rules.LowConductivity)
+	late.Spans = append([]model.Span(nil), late.Spans...)
 	late.Spans[0].EndS += 700
-	p.Low = &late
+	p.Further[0].History = &late
 	x := &sheet{p: p, decides: p.decides()}
 	at := p.History.Spans[0].EndS + 600
 	for _, c := range []struct {
 		low  bool
 		want string
 	}{{false, "Rest on the bench"}, {true, "Roast"}} {
-		if got := x.stepAt(&rules.Finding{AtS: &at, LowConductivity: c.low}); got != c.want {
+		if got := x.stepAt(&rules.Finding{AtS: &at, Run: map[bool]string{true: rules.LowConductivity}[c.low]}); got != c.want {
 			t.Errorf("second run %v: %s, want %s", c.low, got, c.want)
 		}
 	}

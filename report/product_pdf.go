@@ -232,8 +232,8 @@ func (x *sheet) slowestSentence() string {
 		}
 	}
 	key := "chart sentence"
-	if hist == x.p.Low {
-		key = "chart sentence low"
+	if name := x.p.nameOf(hist); name != "" {
+		key += " " + name
 	}
 	if hist.Recorded {
 		key = "chart sentence record"
@@ -305,10 +305,7 @@ func (x *sheet) checks() []string {
 
 // expected is what a probe should read at the place and instant that decide a finding, in its own run; "" where there is none.
 func (x *sheet) expected(f *rules.Finding) string {
-	hist := x.p.History
-	if f.LowConductivity && x.p.Low != nil {
-		hist = x.p.Low
-	}
+	hist := x.p.runOf(f)
 	if !finite(f.AtS) || f.Place == nil || hist == nil {
 		return ""
 	}
@@ -325,16 +322,13 @@ func (x *sheet) expected(f *rules.Finding) string {
 
 // checkRun names the run of a check where that is not the one of the picture.
 func (x *sheet) checkRun(f *rules.Finding) string {
-	low := x.decides.history == x.p.Low && x.p.Low != nil
-	switch sp := x.differs(); {
-	case f.LowConductivity == low:
+	if f.Run == x.p.nameOf(x.decides.history) {
 		return ""
-	case low:
-		return say("check usual")
-	case sp != nil:
-		return say("check low ends", sp.Step.Name, duration(sp.EndS, nearest))
 	}
-	return say("check low")
+	if sp := x.differs(f.Run); sp != nil {
+		return say("check run ends", x.p.runWords(f.Run, true), sp.Step.Name, duration(sp.EndS, nearest))
+	}
+	return say("check run", x.p.runWords(f.Run, true))
 }
 
 // distinct keeps the first n findings that differ in what is asked, where and when.
@@ -367,10 +361,7 @@ func instant(f *rules.Finding) float64 {
 
 // stepAt is the name of the step in which a finding is decided, in the run that the finding belongs to.
 func (x *sheet) stepAt(f *rules.Finding) string {
-	h := x.p.History
-	if f.LowConductivity && x.p.Low != nil {
-		h = x.p.Low
-	}
+	h := x.p.runOf(f)
 	if h == nil {
 		return ""
 	}
@@ -601,8 +592,8 @@ func (x *sheet) card(f *rules.Finding) {
 		return
 	}
 	title := l.Name
-	if f.LowConductivity {
-		title += say("card low")
+	if run := x.p.runWords(f.Run, false); run != "" {
+		title += say("card run", run)
 	}
 	rows := x.cardRows(f)
 	d.section(say("card title", title, verdictWord(f.Verdict)), 2, min(d.pairsHeight(rows, 36)+1, 30), 1)
@@ -647,24 +638,26 @@ func (x *sheet) placeAndTime(f *rules.Finding) string {
 	return joined(where, when)
 }
 
-// inRun names the run that the times of a finding belong to; "" for the run with the listed conductivity.
+// inRun names the run that the times of a finding belong to; "" for the usual run, where that needs no name.
 func (x *sheet) inRun(f *rules.Finding) string {
-	if !f.LowConductivity {
+	run := x.p.runWords(f.Run, false)
+	if run == "" {
 		return ""
 	}
-	if sp := x.differs(); sp != nil {
-		return say("in low run ends", sp.Step.Name, duration(sp.EndS, nearest))
+	if sp := x.differs(f.Run); sp != nil {
+		return say("in run ends", run, sp.Step.Name, duration(sp.EndS, nearest))
 	}
-	return say("in low run")
+	return say("in run", run)
 }
 
-// differs is the first step of the run with 0.9 × conductivity whose end tells the two runs apart; nil if there is none.
-func (x *sheet) differs() *model.Span {
-	if x.p.Low == nil || x.p.History == nil {
+// differs is the first step of a further run whose end tells it apart from the usual one; nil if there is none.
+func (x *sheet) differs(run string) *model.Span {
+	h := x.p.run(run)
+	if h == nil || x.p.History == nil {
 		return nil
 	}
-	for i := range x.p.Low.Spans {
-		sp := &x.p.Low.Spans[i]
+	for i := range h.Spans {
+		sp := &h.Spans[i]
 		if i < len(x.p.History.Spans) && math.Abs(sp.EndS-x.p.History.Spans[i].EndS) >= 60 && sp.Step != nil {
 			return sp
 		}
@@ -813,8 +806,8 @@ func (x *sheet) slowest() {
 	}
 	x.table([]col{{title: say("col step"), wide: 32, bold: true}, {title: say("col start"), wide: 23}, {title: say("col end"), wide: 23}, {title: say("col medium"), wide: 28},
 		{title: say("col coldest"), wide: 37}, {title: say("col hottest"), wide: 37}}, rows, small)
-	if x.p.Low != nil {
-		x.text(say("table usual"))
+	if len(x.p.Further) > 0 {
+		x.text(say("table usual", x.p.runWords("", true)))
 	}
 	x.text(x.moves())
 }
@@ -957,8 +950,8 @@ func (x *sheet) profileSentence(times []float64) string {
 		}
 	}
 	out := say("profile sentence", strings.Join(s, "; "))
-	if hist == x.p.Low {
-		out = say("profile low") + out
+	if name := x.p.nameOf(hist); name != "" {
+		out = say("profile "+name) + out
 	}
 	return out
 }

@@ -63,9 +63,53 @@ type Product struct {
 	Family, RecipeVersion, Batch, Process, Note string
 	Readings                                    []cell.Reading
 	History                                     *model.History
-	Low                                         *model.History // second run at 0.9 k; nil if none was due
-	Samples                                     model.Samples  // every EveryS and at each change of step
+	Further                                     []rules.Run   // further runs; none if none was due
+	Samples                                     model.Samples // every EveryS and at each change of step
 	Judgement                                   rules.Judgement
 	From                                        map[cell.Ref]string // where the cells of the findings come from, as that of Readings; nil if nothing is known
 	Lever                                       string              // the biggest lever in one sentence, for the page of the operator; "" if none was looked for
+}
+
+// run gives a run by its name, "" for the usual one; nil if there is none of that name.
+func (p *Product) run(name string) *model.History {
+	if name == "" {
+		return p.History
+	}
+	for _, r := range p.Further {
+		if r.Name == name {
+			return r.History
+		}
+	}
+	return nil
+}
+
+// runOf gives the run that a finding belongs to.
+func (p *Product) runOf(f *rules.Finding) *model.History {
+	if h := p.run(f.Run); h != nil {
+		return h
+	}
+	return p.History
+}
+
+// nameOf gives the name of a run; "" for the usual one.
+func (p *Product) nameOf(h *model.History) string {
+	for _, r := range p.Further {
+		if r.History == h {
+			return r.Name
+		}
+	}
+	return ""
+}
+
+// runWords names a run in words. The usual one has no name ("") unless there is a choice to be told (always).
+func (p *Product) runWords(name string, always bool) string {
+	switch {
+	case name == "" && p.run(rules.WellMixed) != nil:
+		return say("run conducting")
+	case name == "" && !always:
+		return ""
+	case name == "":
+		return say("run usual")
+	}
+	return say("run " + name)
 }

@@ -508,8 +508,11 @@ func (b *Workbook) addFinding(p *Product, f *rules.Finding) {
 	g.maybe(f.ClockStartS, 1./60)
 	g.maybe(f.ClockEndS, 1./60)
 	run := ""
-	if f.LowConductivity {
+	switch f.Run {
+	case rules.LowConductivity:
 		run = "0.9 of the conductivity"
+	case rules.WellMixed:
+		run = "as well mixed"
 	}
 	for _, s := range []string{f.Why, strings.Join(f.Notes, "; "), run, l.Code, l.Clause, l.Edition, l.IssuedBy, l.ConfirmedBy,
 		l.ConfirmedOn, l.Status, l.CCP, l.Hazard, strings.Join(cellNames(f.Cells), ", ")} {

@@ -182,7 +182,7 @@ func TestNotesStayWithTheirTitle(t *testing.T) {
 func TestOneIsNotSeveral(t *testing.T) {
 	h := roastHead()
 	p := roast(t, model.Slab, rules.Met)
-	p.Steps, p.Low = p.Steps[:1], nil
+	p.Steps, p.Further = p.Steps[:1], nil
 	var err error
 	if p.History, err = model.Solve(p.Product, p.Steps, model.Options{}); err != nil {
 		t.Fatal(err)
@@ -253,6 +253,10 @@ func TestWordsAreComplete(t *testing.T) {
 	for key := range words {
 		plain := !strings.HasPrefix(key, "caution ") && !strings.HasPrefix(key, "change ") && !strings.HasPrefix(key, "deviation ") &&
 			!strings.HasPrefix(key, "word ") && !strings.HasPrefix(key, "means ")
+		for _, run := range []string{rules.LowConductivity, rules.WellMixed} { // "line " + the name of the run
+			stem := strings.TrimSuffix(key, " "+run)
+			plain = plain && (stem == key || !strings.Contains(source, `"`+stem+`"`) && !strings.Contains(source, `"`+stem+` "`))
+		}
 		if plain && !strings.Contains(source, `"`+key+`"`) && !strings.Contains(source, `"`+strings.TrimSuffix(key, " one")+`"`) {
 			t.Errorf("nobody asks for %q", key)
 		}

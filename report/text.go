@@ -65,6 +65,7 @@ var textWords = map[string]string{
 	"group by":      " Decided by %s.",
 	"limit":         "Limit %d: %s: %s",
 	"limit low":     " (second run, at 0.9 of the conductivity)",
+	"limit mixed":   " (run as well mixed)",
 	"course":        "Course of temperature",
 	"recorded":      "These temperatures were measured.",
 	"predicted":     "These temperatures were calculated, not measured.",
@@ -189,11 +190,11 @@ func (t *Text) limits(x *sheet) {
 			continue
 		}
 		n++
-		low := ""
-		if f.LowConductivity {
-			low = textWords["limit low"]
+		run := ""
+		if f.Run != "" {
+			run = textWords["limit "+f.Run]
 		}
-		t.heading(3, "limit", n, f.Limit.Name+low, f.Verdict)
+		t.heading(3, "limit", n, f.Limit.Name+run, f.Verdict)
 		for _, r := range x.cardRows(f) {
 			if r[1] != "" {
 				t.item(fmt.Sprintf(textWords["item"], r[0], r[1]))
@@ -241,8 +242,8 @@ func (t *Text) course(x *sheet) {
 				r = down
 			}
 			c, where := w.At(x.decides.place, sp.EndS), x.decides.placeName
-			if w == p.Low { // another run has its own numbers
-				out = append(out, fmt.Sprintf(textWords["deciding"], where+textWords["limit low"], h.temperature(c, r)))
+			if name := p.nameOf(w); name != "" { // another run has its own numbers
+				out = append(out, fmt.Sprintf(textWords["deciding"], where+textWords["limit "+name], h.temperature(c, r)))
 			} else {
 				out = append(out, fmt.Sprintf(textWords["deciding"], where, told.temperature(where, c, r)))
 			}
@@ -313,8 +314,8 @@ func (t *Text) basis(x *sheet) {
 	if w.Bound != "" {
 		t.line("bound", duration(w.BoundFromS, nearest), w.Bound)
 	}
-	if x.p.Low != nil {
-		t.plain(x.lowSentence())
+	for _, r := range x.p.Further {
+		t.plain(x.runSentence(r))
 	}
 }
 

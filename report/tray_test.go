@@ -87,6 +87,6 @@ func trayJudgement() rules.Judgement {
 			Cells: []cell.Ref{hold.At, {Sheet: "Steps", Row: 3}}, Why: "every point is held for 2 min or more."},
 		{Limit: cool, Level: "must", Verdict: rules.NotMet, Required: ptr(90.), Unit: "min", MarginK: ptr(-9.0000001), PlaceName: "centre", Place: &model.Place{},
 			AtS: ptr(9000.), ClockStartS: ptr(5910.), Cells: []cell.Ref{cool.At}, Why: "the record ends before the food reaches 3 °C.",
-			Notes: []string{"rose above From again at 1 h 05 min"}, LowConductivity: true},
+			Notes: []string{"rose above From again at 1 h 05 min"}, Run: rules.LowConductivity},
 	}, Groups: []rules.GroupFinding{{Group: "Chilling", AnyOf: true, Verdict: rules.NotMet, DecidedBy: "Chill 90"}}}
 }

@@ -12,9 +12,9 @@ func same(a, b string) bool { return strings.EqualFold(strings.TrimSpace(a), str
 func Judge(limits []Limit, groups []Group, s Subject) Judgement {
 	var j Judgement
 	usual := newCourses(s.History)
-	var low *courses
-	if s.Low != nil {
-		low = newCourses(s.Low)
+	further := make([]*courses, len(s.Further))
+	for i := range s.Further {
+		further[i] = newCourses(s.Further[i].History)
 	}
 	for i := range limits {
 		l := &limits[i]
@@ -22,11 +22,11 @@ func Judge(limits []Limit, groups []Group, s Subject) Judgement {
 			continue
 		}
 		f := judgeOne(l, usual)
-		if low != nil {
-			g := judgeOne(l, low)
+		for k, c := range further {
+			g := judgeOne(l, c)
+			g.Run = s.Further[k].Name
 			if lessFavourable(g, f) {
 				f, g = g, f
-				f.LowConductivity = true
 			}
 			if f.Verdict == Met && f.CarryOver == "" && g.CarryOver != "" { // true of one run is a reservation for both
 				f.carriedOver(g.CarryOver)

@@ -124,27 +124,27 @@ type Group struct {
 
 // Finding is what a limit says of a history.
 type Finding struct {
-	Limit           *Limit
-	Level           string // must, advice, alternative
-	Verdict         Verdict
-	Value           *float64 // in Unit
-	Required        *float64 // in Unit
-	Unit            string   // min, °C, log10, K, 1, or "" for stated
-	MarginK         *float64 // room in the limit's own temperature; negative: lacking
-	MarginPlace     string   // the place of MarginK in words where it is not Place; "" elsewhere
-	MarginS         *float64 // room in time; negative: lacking
-	EdgeOf          string   // "60 °C": Place lies at the edge of those that ever were above it, beyond which no clock started; "" elsewhere
-	AtS             *float64 // deciding time from the start of the chain
-	Place           *model.Place
-	PlaceName       string // every point: where in words ("centre", "surface", "14 mm above the underside"); the typed Where otherwise
-	ClockStartS     *float64
-	ClockEndS       *float64
-	Cells           []cell.Ref // the limit's cell first, then the step's or record's
-	Why             string     // one sentence
-	Notes           []string   // e.g. rose above From again at 3 h 05 min
-	Cautions        []string   // keys of the report's cautions: "slow come-up lethality", "lethality without floor", "below 60 °C table row", …
-	CarryOver       string     // that the limit is met only by what the food gets after its heating, in a sentence with numbers; "" elsewhere
-	LowConductivity bool       // this is the finding of the second run at 0.9 k
+	Limit       *Limit
+	Level       string // must, advice, alternative
+	Verdict     Verdict
+	Value       *float64 // in Unit
+	Required    *float64 // in Unit
+	Unit        string   // min, °C, log10, K, 1, or "" for stated
+	MarginK     *float64 // room in the limit's own temperature; negative: lacking
+	MarginPlace string   // the place of MarginK in words where it is not Place; "" elsewhere
+	MarginS     *float64 // room in time; negative: lacking
+	EdgeOf      string   // "60 °C": Place lies at the edge of those that ever were above it, beyond which no clock started; "" elsewhere
+	AtS         *float64 // deciding time from the start of the chain
+	Place       *model.Place
+	PlaceName   string // every point: where in words ("centre", "surface", "14 mm above the underside"); the typed Where otherwise
+	ClockStartS *float64
+	ClockEndS   *float64
+	Cells       []cell.Ref // the limit's cell first, then the step's or record's
+	Why         string     // one sentence
+	Notes       []string   // e.g. rose above From again at 3 h 05 min
+	Cautions    []string   // keys of the report's cautions: "slow come-up lethality", "lethality without floor", "below 60 °C table row", …
+	CarryOver   string     // that the limit is met only by what the food gets after its heating, in a sentence with numbers; "" elsewhere
+	Run         string     // the further run that this is the finding of; "" for the usual one
 }
 
 // GroupFinding is what a group of limits says.
@@ -155,12 +155,24 @@ type GroupFinding struct {
 	DecidedBy string // limit or group name
 }
 
-// Subject is what is judged: a product with one history, or two where a second run at 0.9 k was due; the worse finding counts.
+// The further runs of a product, besides the usual one.
+const (
+	LowConductivity = "low"   // at 0.9 of the conductivity, where that comes from composition
+	WellMixed       = "mixed" // stirred all the time, where the food may mix by itself; the usual run is then the one as conducting
+)
+
+// Run is a further run of a product.
+type Run struct {
+	Name    string // LowConductivity, WellMixed
+	History *model.History
+}
+
+// Subject is what is judged: a product with its history, and further runs where they were due; the worst finding on each limit counts.
 type Subject struct {
 	Product string
 	Family  string
 	History *model.History
-	Low     *model.History // nil if there was no second run
+	Further []Run
 }
 
 // Judgement is everything that the limits say of a product.

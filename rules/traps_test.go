@@ -365,12 +365,12 @@ func TestLowConductivity(t *testing.T) {
 	usual := record(t, "cook 0-60", "0:5 60:76")
 	low := record(t, "cook 0-60", "0:5 60:74")
 	l := Limit{Name: "L", Kind: Hold, Applies: Applies{All: true}, FromC: c(75), TimeS: c(0), Counting: Total}
-	j := Judge([]Limit{l}, nil, Subject{Product: "P", History: usual, Low: low})
-	if j.Verdict != NotMet || !j.Findings[0].LowConductivity || *j.Findings[0].Value != 74 {
+	j := Judge([]Limit{l}, nil, Subject{Product: "P", History: usual, Further: []Run{{LowConductivity, low}}})
+	if j.Verdict != NotMet || j.Findings[0].Run != LowConductivity || *j.Findings[0].Value != 74 {
 		t.Errorf("%v, %+v", j.Verdict, j.Findings[0])
 	}
-	j = Judge([]Limit{l}, nil, Subject{Product: "P", History: low, Low: usual})
-	if j.Verdict != NotMet || j.Findings[0].LowConductivity {
+	j = Judge([]Limit{l}, nil, Subject{Product: "P", History: low, Further: []Run{{LowConductivity, usual}}})
+	if j.Verdict != NotMet || j.Findings[0].Run != "" {
 		t.Errorf("%v, %+v", j.Verdict, j.Findings[0])
 	}
 }

@@ -1,6 +1,8 @@
 package main
 
 import (
+	"slices"
+
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
 	"slowpoint/model/cell"
@@ -20,12 +22,33 @@ func (r *runner) judged(p *workbook.Product) (*report.Product, error) {
 	}
 	out := &report.Product{Product: p.Product, Steps: p.Steps, Family: p.Family, RecipeVersion: p.RecipeVersion, Batch: p.Batch,
 		Process: p.Process, Note: p.Note, History: h}
-	if p.Product.Food.Composed {
-		if out.Low, err = model.Solve(p.Product, p.Steps, model.Options{ConductivityFactor: lowConductivity}); err != nil {
+	if out.Further, err = further(p, h); err != nil {
+		return nil, err
+	}
+	out.Judgement = rules.Judge(r.plan.Limits, r.plan.Groups, rules.Subject{Product: p.Name, Family: p.Family, History: h, Further: out.Further})
+	return out, nil
+}
+
+// further makes the runs that are due besides the usual one: with less conductivity where any food comes from composition, and as well
+// mixed where the food may mix by itself.
+func further(p *workbook.Product, usual *model.History) ([]rules.Run, error) {
+	var out []rules.Run
+	composed := func(m *model.Material) bool { return m.Composed }
+	if slices.ContainsFunc(p.Foods(), composed) {
+		h, err := model.Solve(p.Product, p.Steps, model.Options{ConductivityFactor: lowConductivity})
+		if err != nil {
 			return nil, err
 		}
+		out = append(out, rules.Run{Name: rules.LowConductivity, History: h})
 	}
-	out.Judgement = rules.Judge(r.plan.Limits, r.plan.Groups, rules.Subject{Product: p.Name, Family: p.Family, History: h, Low: out.Low})
+	if model.Mixes(&p.Product) {
+		q, steps := model.Mixed(p.Product, p.Steps, usual)
+		h, err := model.Solve(q, steps, model.Options{})
+		if err != nil {
+			return nil, err
+		}
+		out = append(out, rules.Run{Name: rules.WellMixed, History: h})
+	}
 	return out, nil
 }
 

@@ -478,13 +478,19 @@ func trimmed(v float64) string {
 	return strings.Replace(strconv.FormatFloat(math.Round(v*100)/100+0, 'f', -1, 64), "-", "−", 1)
 }
 
-// governing is the size that decides how fast heat gets in: the smaller of those that end in cooled faces.
+// governing is the size that decides how fast heat gets in: the smaller of those that end in cooled faces. A layered slab has none of
+// its own.
 func governing(p *model.Product) (string, *float64) {
 	z := &p.Size
 	switch p.Shape {
 	case model.Slab:
 		return "thickness", &z.ThicknessM
 	case model.Cylinder, model.Sphere:
+		return "diameter", &z.DiameterM
+	case model.Spheroid:
+		if z.ThicknessM < z.DiameterM {
+			return "thickness", &z.ThicknessM
+		}
 		return "diameter", &z.DiameterM
 	case model.ShortCylinder:
 		if z.LengthM < z.DiameterM {

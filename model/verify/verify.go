@@ -24,6 +24,8 @@ const (
 	Ramp       = "rising medium"
 	Chain      = "chain of steps"
 	LongTime   = "long and short times"
+	Spheroids  = "spheroids"
+	Layers     = "layers"
 	Reference  = "reference problem"
 	Textbook   = "textbook problem"
 	Properties = "properties"
@@ -39,6 +41,8 @@ var Areas = []struct{ Name, Help string }{
 	{Ramp, "a medium that rises steadily, against the exact integral"},
 	{Chain, "other surroundings in every step, and the rise after the oven, against exact projections"},
 	{LongTime, "the limits of long and short times"},
+	{Spheroids, "against numerically exact solutions on the mapped ball"},
+	{Layers, "a filling in its crust with an air gap against its exact series, and steady heat through three layers by hand"},
 	{Reference, "whole chains in one, two and three directions, against independent solutions by two methods"},
 	{Textbook, "problems with a printed answer; the allowance is that of the print"},
 	{Properties, "properties from composition, against arithmetic on the published polynomials"},
@@ -66,7 +70,7 @@ func Run(c Case) Result {
 // Cases lists every case, area by area.
 func Cases() []Case {
 	var all []Case
-	for _, list := range [][]Case{seriesCases(), productCases(), halfSpaceCases(), rampCases(), chainCases(), limitCases(), referenceCases(), textbookCases(),
+	for _, list := range [][]Case{seriesCases(), productCases(), halfSpaceCases(), rampCases(), chainCases(), limitCases(), spheroidCases(), layerCases(), referenceCases(), textbookCases(),
 		propertyCases(), practiceCases(), measuredCases()} {
 		all = append(all, list...)
 	}

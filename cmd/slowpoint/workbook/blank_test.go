@@ -191,10 +191,12 @@ func judgeProduct(t *testing.T, p *Plan, pr *Product) rules.Judgement {
 	s := rules.Subject{Product: pr.Name, Family: pr.Family, History: h}
 	runs := []*model.History{h}
 	if pr.Food.Composed {
-		if s.Low, err = model.Solve(pr.Product, pr.Steps, model.Options{ConductivityFactor: 0.9}); err != nil {
+		low, err := model.Solve(pr.Product, pr.Steps, model.Options{ConductivityFactor: 0.9})
+		if err != nil {
 			t.Fatalf("%s: %v", pr.Name, err)
 		}
-		runs = append(runs, s.Low)
+		s.Further = []rules.Run{{Name: rules.LowConductivity, History: low}}
+		runs = append(runs, low)
 	}
 	for _, h := range runs {
 		for _, x := range h.Spans {
