@@ -12,6 +12,7 @@ import (
 type body struct {
 	kinds [3]axisKind
 	radii [3]float64
+	by    [3]stretch   // of the coordinates
 	ball  *spheroidMap // of a spheroid, whose coordinates are ρ and μ; nil: straight axes
 	nodes *nodes
 	order []int // nodes from the centre outwards
@@ -29,9 +30,9 @@ func newBody(of body, nd *nodes) *body {
 	for i := range b.order {
 		b.order[i] = i
 		x := b.node(i)
-		if b.ball != nil {
-			p := b.ball.place(x)
-			far[i] = p.UpM*p.UpM + p.AcrossM*p.AcrossM
+		if b.ball != nil || b.by != [3]stretch{} {
+			p := b.place(x)
+			far[i] = p.UpM*p.UpM + p.AcrossM*p.AcrossM + p.AlongM*p.AlongM
 			continue
 		}
 		for a := range x {
@@ -83,9 +84,9 @@ func (b *body) coord(p Place) coord {
 		case lumped:
 			x[a] = 0
 		case planeFull:
-			x[a] = max(-1, min(1, x[a]/b.radii[a]))
+			x[a] = b.by[a].s(max(-1, min(1, x[a]/b.radii[a])))
 		default:
-			x[a] = min(1, math.Abs(x[a])/b.radii[a])
+			x[a] = b.by[a].s(min(1, math.Abs(x[a])/b.radii[a]))
 		}
 	}
 	return x
@@ -96,7 +97,7 @@ func (b *body) place(x coord) Place {
 	if b.ball != nil {
 		return b.ball.place(x)
 	}
-	return Place{UpM: x[0] * b.radii[0], AcrossM: x[1] * b.radii[1], AlongM: x[2] * b.radii[2]}
+	return Place{UpM: b.by[0].x(x[0]) * b.radii[0], AcrossM: b.by[1].x(x[1]) * b.radii[1], AlongM: b.by[2].x(x[2]) * b.radii[2]}
 }
 
 // surface tells whether coordinates lie on the surface.

@@ -71,7 +71,7 @@ func (s *solver) rougher(e effort) effort {
 // errors off, less some for doubt.
 const (
 	volumesWorse     = 2.3
-	polynomialsWorse = 3.5
+	polynomialsWorse = 3
 )
 
 // polynomial tells whether the march has polynomials in space: smooth fields.
@@ -464,7 +464,7 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 // laySpace lays out a body of two or three axes, or of one without a front.
 func (s *solver) laySpace(f *marched, l *law, e effort) {
 	var axes [3]*spaceAxis
-	var lines [3]*axis
+	var by [3]stretch
 	nd := &nodes{x: [3][]float64{{0}, {0}, {0}}, phi: [3][]float64{{1}, {1}, {1}}}
 	front := s.front
 	for a := range axes {
@@ -477,17 +477,16 @@ func (s *solver) laySpace(f *marched, l *law, e effort) {
 			nd.x[a] = axes[a].x
 			continue
 		}
-		n := s.smoothNodes(a, e)
-		axes[a] = smoothAxis(s.kinds[a], s.radii[a], n, s.faces[a])
+		by[a] = s.stretchOf(a)
+		axes[a] = smoothAxis(s.kinds[a], s.radii[a], s.smoothNodes(a, e), by[a], s.faces[a])
 		axes[a].bodyNodes(nd, a)
-		lines[a] = &axis{base: baseOf(s.kinds[a], n), radiusM: s.radii[a]}
 	}
 	march := newSpaceMarch(axes, l, s.product.StartC)
 	f.state, f.mesh = march, newSpaceMesh(axes)
 	if !front {
-		f.state = newModesMarch(march, lines, &s.tmp.call, e.tolK/4)
+		f.state = newModesMarch(march, e.tolK/4)
 	}
-	f.body = newBody(body{kinds: s.kinds, radii: s.radii, pieces: front}, nd)
+	f.body = newBody(body{kinds: s.kinds, radii: s.radii, by: by, pieces: front}, nd)
 }
 
 // marchSettleS is the longest time after a change of surroundings from which the error is held where polynomials in two or three
@@ -503,9 +502,28 @@ func (s *solver) marchSettle(alpha float64) float64 {
 	return settle
 }
 
-// smoothNodes is how many polynomials an axis gets.
+// crowding is how thin a layer at a far face is taken to be, by the thinnest half axis.
+const crowding = 1.5
+
+// crowded is the factor by which an axis is crowded at its faces.
+func (s *solver) crowded(a int) float64 {
+	thin := s.radii[a]
+	for i := 0; i < s.used; i++ {
+		thin = min(thin, s.radii[i])
+	}
+	return max(0.1, min(1, crowding*thin/s.radii[a]))
+}
+
+// stretchOf is the stretch of an axis.
+func (s *solver) stretchOf(a int) stretch { return stretchFor(s.crowded(a)) }
+
+// smoothNodes is how many polynomials an axis gets: a stretched one as many as one of its crowded radius, and some for the stretch.
 func (s *solver) smoothNodes(a int, e effort) int {
-	n := int(math.Round(float64(s.degrees(a, 0)) * e.more))
+	by := s.crowded(a)
+	fo := s.foMin[a]
+	s.foMin[a] /= by * by
+	n := int(math.Round((float64(s.degrees(a, 0)) + 2*(1-by)) * e.more))
+	s.foMin[a] = fo
 	if e.rough {
 		n += s.fewer(a, 0) - s.degrees(a, 0)
 	}

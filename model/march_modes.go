@@ -8,9 +8,7 @@ import "math"
 // content over the middle heat capacity, a temperature in all but name, so that heat is conserved whatever the steps.
 type modesMarch struct {
 	*spaceMarch
-	lines [3]*axis
-	mem   slab // for what lasts a step of the chain
-	tmp   *slab
+	mem slab // for what lasts a step of the chain
 
 	rhoC, k         float64       // the middle ones, J/(m³·K), W/(m·K)
 	films           [3][2]float64 // W/(m²·K), by axis and face
@@ -32,8 +30,8 @@ type modesMarch struct {
 // keptW stands for a face that is kept at its medium, W/(m²·K): it stays within a thousandth of a degree of it soon after the start.
 const keptW = 1e7
 
-func newModesMarch(m *spaceMarch, lines [3]*axis, tmp *slab, tolK float64) *modesMarch {
-	f := &modesMarch{spaceMarch: m, lines: lines, tmp: tmp, tolK: tolK}
+func newModesMarch(m *spaceMarch, tolK float64) *modesMarch {
+	f := &modesMarch{spaceMarch: m, tolK: tolK}
 	f.mem.wide = 1
 	for _, s := range []*[]float64{&f.c, &f.n0, &f.a, &f.na, &f.next, &f.n1, &f.e, &f.p1, &f.p2, &f.p3, &f.before, &f.bend, &f.x, &f.y, &f.z, &f.nodal} {
 		*s = make([]float64, m.n)
@@ -77,42 +75,47 @@ func (m *modesMarch) leave() {
 // linearize makes the modes of films as steep as the surfaces are tau s into the step, and brings the state into them.
 func (m *modesMarch) linearize(tau float64) {
 	m.mem.free = m.mem.all
-	p := Properties{KWmK: m.k, RhoKgM3: m.rhoC, CJkgK: 1}
 	for a, ax := range m.axes {
-		n := ax.n
-		if n == 1 {
+		if ax.n == 1 {
 			m.decay[a], m.to[a], m.from[a] = []float64{0}, []float64{1}, []float64{1}
 			continue
 		}
-		var f [2]film
 		for side, s := range m.skins[a] {
-			f[side] = film{group: -1}
-			if s == nil || s.insulated {
-				continue
-			}
-			m.films[a][side] = m.steepness(a, side, tau)
-			f[side] = film{u: m.films[a][side], group: 0}
-		}
-		st := m.lines[a].step(&m.mem, m.tmp, p, f[0], f[1])
-		m.decay[a] = st.rate
-		m.to[a], m.from[a] = m.mem.take(n*n), m.mem.take(n*n)
-		for j := 0; j < n; j++ {
-			var phi [maxDegrees]float64
-			ax.poly.values(ax.x[j], phi[:n], nil)
-			for i := 0; i < n; i++ {
-				in, out := 0.0, 0.0
-				for k := 0; k < n; k++ {
-					in += st.b[k*n+i] * ax.poly.b[k*n+j]
-					out += st.b[k*n+i] * phi[k]
-				}
-				m.to[a][i*n+j], m.from[a][j*n+i] = in, out
+			m.films[a][side] = 0
+			if s != nil && !s.insulated {
+				m.films[a][side] = m.steepness(a, side, tau)
 			}
 		}
+		m.decay[a], m.to[a], m.from[a] = ax.modes(&m.mem, m.k/m.rhoC, [2]float64{m.films[a][0] / m.rhoC, m.films[a][1] / m.rhoC})
 	}
 	for i, h := range m.h {
 		m.nodal[i] = h / m.rhoC
 	}
 	m.modes(m.nodal, m.c)
+}
+
+// modes solves an axis with a diffusivity, m²/s, and films over heat capacities, m/s: the rates of decay, 1/s, and the matrices that take
+// values at the nodes into modes and back. Scaled by the roots of the weights the problem is symmetric.
+func (a *spaceAxis) modes(mem *slab, alpha float64, films [2]float64) (decay, to, from []float64) {
+	n := a.n
+	sym := mem.take(n * n)
+	for i := 0; i < n; i++ {
+		for j := 0; j < n; j++ {
+			sym[i*n+j] = -alpha * a.k[i*n+j] * math.Sqrt(a.w[i]/a.w[j])
+		}
+	}
+	sym[0] += films[0] * a.face[0]
+	sym[n*n-1] += films[1] * a.face[1]
+	decay, v := eigen(mem, n, sym)
+	to, from = mem.take(n*n), mem.take(n*n)
+	for i := 0; i < n; i++ {
+		decay[i] = max(0, decay[i])
+		for j := 0; j < n; j++ {
+			to[i*n+j] = v[i*n+j] * math.Sqrt(a.w[j])
+			from[j*n+i] = v[i*n+j] / math.Sqrt(a.w[j])
+		}
+	}
+	return decay, to, from
 }
 
 // steepness is the largest slope of the flux on a face now, W/(m²·K).

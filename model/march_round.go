@@ -18,7 +18,7 @@ type roundMesh struct {
 // newRoundMesh makes a mesh of nr × nm nodes.
 func newRoundMesh(ball *spheroidMap, nr, nm int) *roundMesh {
 	a, b := ball.a, ball.b
-	rho, mu := collocationOf(spherical, nr), collocationOf(planeHalf, nm)
+	rho, mu := collocationOf(spherical, nr, 0), collocationOf(planeHalf, nm, 0)
 	axes := [3]*spaceAxis{
 		{kind: spherical, n: nr, x: rho.x, w: rho.w, poly: rho, face: [2]float64{0, 1}},
 		{kind: planeHalf, n: nm, x: mu.x, w: mu.w, poly: mu},

@@ -9,7 +9,7 @@ import (
 type spaceAxis struct {
 	kind         axisKind
 	n            int
-	x            []float64 // nodes, in radii
+	x            []float64 // nodes, in radii, or in the coordinate of a stretch
 	w            []float64 // their shares of the volume
 	k            []float64 // n×n, 1/m²: what a Kirchhoff integral at node j adds to the rate at node i
 	band         bool      // k has entries beside its diagonal only
@@ -21,8 +21,8 @@ type spaceAxis struct {
 }
 
 // smooth makes an axis of n nodes with the polynomial through them, for fields without a freezing front.
-func smoothAxis(kind axisKind, radiusM float64, n int, faces [2]*Face) *spaceAxis {
-	c := collocationOf(kind, n)
+func smoothAxis(kind axisKind, radiusM float64, n int, by stretch, faces [2]*Face) *spaceAxis {
+	c := collocationOf(kind, n, by)
 	a := &spaceAxis{kind: kind, n: n, x: c.x, w: c.w, k: make([]float64, n*n), poly: c, lower: faces[0], upper: faces[1]}
 	for i, k := range c.k {
 		a.k[i] = k / (radiusM * radiusM)
