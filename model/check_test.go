@@ -223,8 +223,9 @@ func TestChillMediumIsRaised(t *testing.T) {
 		t.Fatal(err)
 	}
 	a, b := h.Sample(300), low.Sample(300)
+	both := h.ErrorK + low.ErrorK
 	for i := range a.TimesS {
-		if a.Coldest[i] < b.Coldest[i]-1e-3 || a.Hottest[i] < b.Hottest[i]-1e-3 {
+		if a.Coldest[i] < b.Coldest[i]-both || a.Hottest[i] < b.Hottest[i]-both {
 			t.Fatalf("at %g s the bound is below: %g, %g", a.TimesS[i], a.Coldest[i], b.Coldest[i])
 		}
 	}

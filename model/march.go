@@ -55,17 +55,13 @@ type effort struct {
 	more  float64 // factor on the number of nodes
 	tolK  float64 // error of a step in time, K
 	rough bool    // the second march, that the error is estimated with
+	ends  []Span  // rough: the steps as they ran in the first march, so that both change surroundings at the same instants
 }
 
 // rougher is the effort of the second march. A step's error in time is of third order, so that their sum goes with the tolerance to 2/3.
 // Control volumes, with half the nodes, and times that go with them make about four times the error; polynomials, two fewer on each half
 // axis, and times that go with them about six times.
-func (s *solver) rougher(e effort) effort {
-	if s.polynomial() {
-		return effort{e.more, e.tolK * 6, true}
-	}
-	return effort{e.more, e.tolK * 6, true}
-}
+func (s *solver) rougher(e effort, ran []Span) effort { return effort{e.more, e.tolK * 6, true, ran} }
 
 // How the difference of the two marches goes over into an error: that of a march with four or six times the error lies three or five
 // errors off, less some for doubt.
@@ -96,7 +92,7 @@ func (s *solver) march() (*History, error) {
 			return nil, s.refused
 		}
 		chain := s.chain
-		_, rough := s.marchOnce(s.rougher(e))
+		_, rough := s.marchOnce(s.rougher(e, h.Spans))
 		s.chain, s.main = chain, fine
 		h.ErrorK = max(1e-5, fine.differs(h, rough)/worse)
 		if h.ErrorK <= marchGoalK || tries == 3 {
@@ -128,7 +124,7 @@ func (s *solver) marchOnce(e effort) (*History, *marched) {
 		if len(s.refused) > 0 {
 			return nil, nil
 		}
-		cs := s.marchStep(f, &span, e.tolK)
+		cs := s.marchStep(f, &span, e)
 		s.chain = append(s.chain, cs)
 		t += cs.durS
 		span.EndS = t
@@ -180,9 +176,15 @@ func (s *solver) outside(h *History) {
 }
 
 // marchStep runs one step into the track.
-func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
+func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 	st := span.Step
+	until, tolK := st.UntilC, e.tolK
 	cs := &chainStep{durS: st.DurationS, knots: []float64{0}}
+	if e.rough {
+		until = nil
+		ran := &e.ends[len(s.chain)]
+		cs.durS = ran.EndS - ran.StartS
+	}
 	made := map[*Exposure]*skin{}
 	var worn []wornSkin
 	skins := func(face *Face) *skin {
@@ -219,7 +221,7 @@ func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
 		for next < len(cs.knots) && cs.knots[next] <= tau {
 			next++
 		}
-		end := st.DurationS
+		end := cs.durS
 		if next < len(cs.knots) {
 			end = min(end, cs.knots[next])
 		}
@@ -229,7 +231,7 @@ func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
 		} else if use > rest/2 {
 			use = rest / 2
 		}
-		if st.UntilC != nil {
+		if until != nil {
 			f.state.save()
 		}
 		err := f.state.try(tau, use)
@@ -247,14 +249,14 @@ func (s *solver) marchStep(f *marched, span *Span, tolK float64) *chainStep {
 		} else {
 			d = use * grow
 		}
-		if st.UntilC != nil && f.missing(span.StartS+tau, *st.UntilC, st.Stage.Heats) <= 0 {
-			cs.durS = f.arrive(*st.UntilC, st.Stage.Heats, span.StartS, from, kept)
+		if until != nil && f.missing(span.StartS+tau, *until, st.Stage.Heats) <= 0 {
+			cs.durS = f.arrive(*until, st.Stage.Heats, span.StartS, from, kept)
 			reached := true
 			span.Reached = &reached
 			return cs
 		}
 	}
-	if st.UntilC != nil {
+	if until != nil {
 		reached := false
 		span.Reached = &reached
 	}
