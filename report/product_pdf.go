@@ -947,6 +947,9 @@ func (x *sheet) profileSentence(times []float64) string {
 		s = append(s, say(way.words, args...))
 	}
 	out := say("profile sentence", strings.Join(s, "; "))
+	if x.p.Product.Shape == model.Spheroid {
+		out = say("profile sentence spheroid", strings.Join(s, "; "))
+	}
 	if x.p.Product.Shape == model.LayeredSlab {
 		out += say("profile joints")
 	}

@@ -24,8 +24,8 @@ func (x *sheet) properties() {
 	}
 	d := x.doc
 	d.heading(say("properties title"), 1, 40)
-	d.grouped([]col{{title: say("col food"), wide: 48, bold: true}, {title: say("col temperature"), wide: 27}, {title: say("col conductivity"), wide: 27},
-		{title: say("col density"), wide: 24}, {title: say("col heat"), wide: 30}, {title: say("col ice"), wide: 24}}, rows, small, func(i int) bool { return i+1 < len(rows) && rows[i+1][0] == "" })
+	d.grouped([]col{{title: say("col food"), wide: 42, bold: true}, {title: say("col temperature"), wide: 36}, {title: say("col conductivity"), wide: 27},
+		{title: say("col density"), wide: 26}, {title: say("col heat"), wide: 31}, {title: say("col ice"), wide: 18}}, rows, small, func(i int) bool { return i+1 < len(rows) && rows[i+1][0] != "" })
 	d.text(x.propertiesSentence())
 }
 
@@ -48,7 +48,7 @@ func (x *sheet) propertyRows() [][]string {
 		}
 		for _, c := range x.propertiesAt(m) {
 			ice := ""
-			if m.IceShare != nil {
+			if m.IceShare != nil && x.coldRun(*m.FreezingC) {
 				ice = say("percent", plain(100*m.IceShare(c), 0, nearest))
 			}
 			add(x.head.temperature(c, nearest), m.Props(c), ice)
