@@ -372,7 +372,7 @@ func (v valley) newton(b *base, q []float64, sign float64) (c, x float64) {
 		next := x - slope/bend
 		switch {
 		case bend > 0 && next >= lo && next <= hi:
-			if gain := slope * (x - next) / 2; gain < 1e-6 { // K: no more is to be had
+			if gain := slope * (x - next) / 2; gain < 1e-7 { // K: no more is to be had
 				return c - sign*gain, next
 			}
 		case slope < 0 && !tried[1]: // the end may be the minimum

@@ -81,8 +81,8 @@ func (f *tensor) sampleLine(h *History, s *Samples) {
 		}
 		hull := h.hull[span]
 		s.Points[0][k], s.Mean[k] = clamp(w.now.centre, hull), clamp(w.now.mean, hull)
-		s.Coldest[k], s.ColdestAt[k].UpM = clamp(low.c, hull), low.x[0]*w.b.radii[0]
-		s.Hottest[k], s.HottestAt[k].UpM = clamp(high.c, hull), high.x[0]*w.b.radii[0]
+		s.Coldest[k], s.ColdestAt[k].UpM = clamp(low.c, hull), low.x*w.b.radii[0]
+		s.Hottest[k], s.HottestAt[k].UpM = clamp(high.c, hull), high.x*w.b.radii[0]
 	}
 }
 
@@ -229,8 +229,14 @@ func (w *lineSampler) steady() bool {
 	return true
 }
 
+// endmost is a coldest or hottest place of one axis.
+type endmost struct {
+	c float64 // °C
+	x float64
+}
+
 // follow gives the coldest and hottest place from what is known of the field, without looking at all nodes; ok is false if not enough is.
-func (w *lineSampler) follow() (low, high extreme, ok bool) {
+func (w *lineSampler) follow() (low, high endmost, ok bool) {
 	k := &w.known
 	if k.st != w.sg.step {
 		return low, high, false
@@ -241,33 +247,33 @@ func (w *lineSampler) follow() (low, high extreme, ok bool) {
 	}
 	xs := w.b.nodes.x[0]
 	last := len(xs) - 1
-	low, high = extreme{w.now.first, coord{xs[0]}}, extreme{w.now.last, coord{xs[last]}}
+	low, high = endmost{w.now.first, xs[0]}, endmost{w.now.last, xs[last]}
 	if low.c > high.c {
 		low, high = high, low
 	}
 	if k.turns == 1 && high.c-low.c <= flatK { // faces that meet the same: the underside, as among nodes
-		low = extreme{w.now.first, coord{xs[0]}}
+		low = endmost{w.now.first, xs[0]}
 		high = low
 	}
 	if k.turns == 0 {
 		return low, high, high.c-low.c > clearK
 	}
 	if k.upper > 0 { // a valley
-		low.c, low.x[0] = w.inner(1, &w.cold)
+		low.c, low.x = w.inner(1, &w.cold)
 	} else {
-		high.c, high.x[0] = w.inner(-1, &w.hot)
+		high.c, high.x = w.inner(-1, &w.hot)
 	}
 	return low, high, true
 }
 
 // look fills the nodes, finds the coldest and hottest place among and between them, and remembers what is known of the field by that.
-func (w *lineSampler) look() (low, high extreme) {
+func (w *lineSampler) look() (low, high endmost) {
 	st := w.sg.step
 	w.fill()
 	low, high, turns := w.ends()
 	w.known, w.near.move = profile{}, 0
 	lower, upper, clear := w.gradients()
-	inside := func(e extreme) bool { return !slices.Contains(w.b.nodes.x[0], e.x[0]) }
+	inside := func(e endmost) bool { return !slices.Contains(w.b.nodes.x[0], e.x) }
 	rise := w.b.buf[len(w.b.buf)-1] - w.b.buf[0]
 	if math.Abs(rise) <= flatK { // rounding: the faces tell
 		rise = 0
@@ -371,7 +377,7 @@ func (sg *tensorSeg) restMean(tau float64) float64 {
 }
 
 // ends finds the coldest and hottest place from the nodes, looking between them only where they leave it open.
-func (w *lineSampler) ends() (low, high extreme, turns int) {
+func (w *lineSampler) ends() (low, high endmost, turns int) {
 	b := w.b
 	lo, hi, turns := b.turning()
 	low, high = w.beside(lo, 1, &w.cold), w.beside(hi, -1, &w.hot)
@@ -423,10 +429,10 @@ func (b *body) turning() (lo, hi, turns int) {
 }
 
 // beside finds the extreme at or beside a node; sign 1 looks for the coldest. near is where it was found last, and is kept up to date.
-func (w *lineSampler) beside(node int, sign float64, near *float64) extreme {
+func (w *lineSampler) beside(node int, sign float64, near *float64) endmost {
 	b, xs := w.b, w.b.nodes.x[0]
 	at := onAxis{axis: 0, i: node, g: node, stride: 1}
-	e := extreme{b.buf[node], coord{xs[node]}}
+	e := endmost{b.buf[node], xs[node]}
 	lo, hi := max(node-1, 0), min(node+1, len(xs)-1)
 	if b.settled(at, sign) || math.Abs(b.buf[lo]-e.c) <= flatK && math.Abs(b.buf[hi]-e.c) <= flatK {
 		return e // the latter is flat: stay where the centre is nearest
@@ -437,7 +443,7 @@ func (w *lineSampler) beside(node int, sign float64, near *float64) extreme {
 		v = valleyOf(b.around(at, sign))
 	}
 	if c, to := v.newton(w.f.axes[0].base, w.line[:w.lineLen], sign); sign*c < sign*e.c-1e-12 {
-		e.c, e.x[0], *near = c, to, to
+		e.c, e.x, *near = c, to, to
 	}
 	return e
 }

@@ -101,3 +101,54 @@ func TestSamplesOfOneAxisHoldAllPlaces(t *testing.T) {
 		}
 	}
 }
+
+// A slab in one medium with another film on each face: the coldest place of a cook and the hottest of a chill move inside it. At every
+// sample they are at the temperatures named, and no place beside them or anywhere else is colder or hotter.
+func TestExtremeInsideASlabIsFollowed(t *testing.T) {
+	rnd := rand.New(rand.NewPCG(11, 5))
+	between := func(a, b float64) float64 { return a + (b-a)*rnd.Float64() }
+	inside := 0
+	for trial := range 80 {
+		r := between(0.01, 0.06)
+		p := Product{Shape: Slab, StartC: between(2, 40), Size: Size{ThicknessM: 2 * r},
+			Food: &Material{Name: "test", Source: "input of the test", Waterless: true, Props: func(float64) Properties { return testFood }}}
+		var steps []Step
+		for i, stage := range []*Stage{Cook, Cool} {
+			above, below := between(5, 150), between(5, 150)
+			air := Course{Name: "air", TimesS: []float64{0}, C: []float64{[]float64{between(90, 180), between(0, 15)}[i]}}
+			if trial%3 == 1 { // it settles
+				air.TimesS, air.C = []float64{0, 900, 7200}, []float64{air.C[0] + []float64{-20, 20}[i], air.C[0], air.C[0]}
+			}
+			e := func(w *float64) Exposure { return Exposure{Surface: Film, FilmW: w, Medium: air} }
+			steps = append(steps, Step{Stage: stage, DurationS: between(1800, 7200), Exposure: e(&above), Faces: []FaceExposure{{Face: Underside, Exposure: e(&below)}}})
+		}
+		h, err := Solve(p, steps, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		s := h.Sample([]float64{17, 60, 240}[trial%3])
+		for k, at := range s.TimesS {
+			for _, e := range []struct {
+				c, x, sign float64
+			}{{s.Coldest[k], s.ColdestAt[k].UpM, 1}, {s.Hottest[k], s.HottestAt[k].UpM, -1}} {
+				if math.Abs(e.x) < 0.999*r {
+					inside++
+				}
+				if c := h.At(Place{UpM: e.x}, at); math.Abs(c-e.c) > 1e-6 {
+					t.Fatalf("trial %d at %.0f s: %.3f mm is at %.8f °C, named with %.8f", trial, at, 1000*e.x, c, e.c)
+				}
+				if at < 60 { // before that nothing is promised, and the field is not smooth
+					continue
+				}
+				for _, x := range []float64{e.x - 0.01*r, e.x + 0.01*r, r * between(-1, 1)} {
+					if c := h.At(Place{UpM: max(-r, min(r, x))}, at); e.sign*(c-e.c) < -1e-4 {
+						t.Fatalf("trial %d at %.0f s: %.3f mm is at %.7f °C, beyond %.7f at %.3f mm", trial, at, 1000*x, c, e.c, 1000*e.x)
+					}
+				}
+			}
+		}
+	}
+	if inside < 5000 {
+		t.Errorf("only %d extremes lay inside: the case does not show what it should", inside)
+	}
+}

@@ -31,7 +31,7 @@ func (s *series) add(f float64, o *series) {
 }
 
 // nearK is how large the last term of the series may be, K; those left out are smaller.
-const nearK = 1e-6
+const nearK = 1e-7
 
 // inner follows the extreme inside a field that has one; sign 1: it is the coldest. last is where it was found last, and is kept up to date.
 func (w *lineSampler) inner(sign float64, last *float64) (c, x float64) {

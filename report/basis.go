@@ -18,6 +18,7 @@ func (x *sheet) basis() {
 	d.text(say("factors note"))
 	rows := x.factors()
 	d.grouped([]col{{title: say("col factor"), wide: 32, bold: true}, {title: say("col used"), wide: 78}, {title: say("col from"), wide: 70}}, rows, small, func(i int) bool { return i+1 < len(rows) && rows[i+1][0] != "" })
+	x.properties()
 	d.heading(say("method title"), 1, 20)
 	if p.History != nil {
 		d.text(say("method", p.History.Method))
@@ -61,7 +62,6 @@ func (x *sheet) runSentence(r rules.Run) string {
 // factors are the critical factors with the values used and where they come from.
 func (x *sheet) factors() [][]string {
 	h, p := x.head, x.p
-	m := p.Product.Food
 	var rows [][]string
 	add := func(a, b, c string) { rows = append(rows, []string{a, b, c}) }
 	shape := ""
@@ -70,7 +70,7 @@ func (x *sheet) factors() [][]string {
 	}
 	add(say("factor shape"), joined(shape, x.sizes()), x.from("Shape", "Thickness", "Width", "Length", "Diameter", "Volume", "Surface area"))
 	add(say("factor start"), h.stated(p.Product.StartC), x.from("Start temperature"))
-	if m != nil {
+	for _, m := range p.Product.Foods() {
 		add(say("factor food"), joined(m.Name, m.Composition), m.Source)
 		if m.FreezingC != nil {
 			add(say("factor freezing"), h.stated(*m.FreezingC), m.Source)
@@ -107,6 +107,10 @@ func (x *sheet) from(columns ...string) string {
 func (x *sheet) spanFactors(sp *model.Span, add func(a, b, c string)) {
 	h, s := x.head, sp.Step
 	what := s.Name
+	method := ""
+	if sp.Method != "" {
+		method = say("factor method", sp.Method)
+	}
 	end := duration(sp.EndS-sp.StartS, nearest)
 	switch {
 	case sp.Reached != nil && *sp.Reached && s.UntilC != nil:
@@ -114,7 +118,7 @@ func (x *sheet) spanFactors(sp *model.Span, add func(a, b, c string)) {
 	case sp.Reached != nil && s.UntilC != nil:
 		end = say("factor until not", end, h.stated(*s.UntilC))
 	}
-	add(what, joined(say("factor lasts", end), x.exposure(&s.Exposure)), s.At.String())
+	add(what, joined(say("factor lasts", end), x.exposure(&s.Exposure), method), s.At.String())
 	for i := range s.Faces {
 		if words := x.exposure(&s.Faces[i].Exposure); words != "" {
 			add(what, s.Faces[i].Face.Name+": "+words, s.Faces[i].At.String())
@@ -126,6 +130,9 @@ func (x *sheet) spanFactors(sp *model.Span, add func(a, b, c string)) {
 			face = ", " + f.Face.Name
 		}
 		used := say("film", plain(f.FilmW, 2, nearest))
+		if f.MostW > f.LeastW {
+			used += say("film ranges", plain(f.LeastW, 1, down), plain(f.MostW, 1, up))
+		}
 		if math.IsInf(f.FilmW, 1) {
 			used = say("film held")
 		} else if f.TotalW > 0 && plain(f.TotalW, 2, nearest) != plain(f.FilmW, 2, nearest) {
@@ -137,7 +144,7 @@ func (x *sheet) spanFactors(sp *model.Span, add func(a, b, c string)) {
 		}
 		add(what+face, used, source)
 	}
-	if pr := sp.Props; pr.KWmK > 0 && x.p.Product.Food != nil {
+	if pr := sp.Props; pr.KWmK > 0 && x.p.Product.Food != nil && sp.Method != model.Marched {
 		add(what, say("props", plain(pr.KWmK, 4, nearest), plain(pr.RhoKgM3, 1, nearest), plain(pr.CJkgK, 0, nearest), x.propsAt(sp)), say("props source"))
 	}
 	if sp.MediumFromC != nil && sp.MediumToC != nil {

@@ -2,6 +2,7 @@ package report
 
 import (
 	"math"
+	"slices"
 	"strings"
 
 	"slowpoint/model"
@@ -42,8 +43,11 @@ var triggers = []trigger{
 	}},
 	{"moist surface above boiling", boiling},
 	{"chill medium raised to the freezing point", stepsWhere(func(sp *model.Span) bool { return sp.MediumFromC != nil })},
-	{"crossing freezing", freezing},
-	{"properties from composition", func(h *Head, p *Product) ([]any, bool) { return nil, p.Product.Food != nil && p.Product.Food.Composed }},
+	{"crossing freezing", func(h *Head, p *Product) ([]any, bool) { return freezing(h, p, false) }},
+	{"freezing calculated", func(h *Head, p *Product) ([]any, bool) { return freezing(h, p, true) }},
+	{"properties from composition", func(h *Head, p *Product) ([]any, bool) {
+		return nil, slices.ContainsFunc(p.Product.Foods(), func(m *model.Material) bool { return m.Composed })
+	}},
 	{"conductivity scatter", func(h *Head, p *Product) ([]any, bool) { return nil, p.run(rules.LowConductivity) != nil }},
 	{"thick food may flow", func(h *Head, p *Product) ([]any, bool) {
 		return nil, p.run(rules.WellMixed) != nil
@@ -54,6 +58,8 @@ var triggers = []trigger{
 		}
 		return []any{p.Product.Shape.Name}, true
 	}},
+	{"layers touch perfectly", touching},
+	{"cooked food shrinks", shrinks},
 	{"start assumed uniform", func(h *Head, p *Product) ([]any, bool) {
 		return []any{h.stated(p.Product.StartC)}, p.History != nil && !p.History.Recorded && p.Product.Shape != model.Stirred
 	}},
@@ -212,20 +218,45 @@ func boiling(h *Head, p *Product) ([]any, bool) {
 	return []any{h.temperature(hot, up), h.stated(100)}, hot > 100
 }
 
-// freezing: somewhere the food is at or below its freezing point, or below 0 °C where none is known.
-func freezing(h *Head, p *Product) ([]any, bool) {
-	if p.Product.Food == nil || p.History == nil || p.History.Recorded {
+// freezing: somewhere the food is at or below its freezing point, or below 0 °C where none is known; of foods whose ice is calculated,
+// or of the others. Of several foods it is the first.
+func freezing(h *Head, p *Product, calculated bool) ([]any, bool) {
+	if p.History == nil || p.History.Recorded {
 		return nil, false
-	}
-	at := 0.0
-	if p.Product.Food.FreezingC != nil {
-		at = *p.Product.Food.FreezingC
 	}
 	cold := math.Inf(1)
 	for _, c := range p.Samples.Coldest {
 		cold = min(cold, c)
 	}
-	return []any{h.temperature(cold, down), h.stated(at)}, cold <= at
+	for _, m := range p.Product.Foods() {
+		at := 0.0
+		if m.FreezingC != nil {
+			at = *m.FreezingC
+		}
+		if cold <= at && (m.EnthalpyJkg != nil) == calculated {
+			return []any{h.temperature(cold, down), h.stated(at)}, true
+		}
+	}
+	return nil, false
+}
+
+// touching: layers between which no contact resistance was given.
+func touching(h *Head, p *Product) ([]any, bool) {
+	var joints []string
+	for i := 0; i+1 < len(p.Product.Layers); i++ {
+		if p.Product.Layers[i].BelowM2KW == 0 {
+			joints = append(joints, say("joint", i+1, i+2))
+		}
+	}
+	return []any{strings.Join(joints, ", ")}, len(joints) > 0
+}
+
+// shrinks: a step that cooks food that holds water.
+func shrinks(h *Head, p *Product) ([]any, bool) {
+	moist := func(m *model.Material) bool { return !m.Waterless }
+	cooks := func(sp model.Span) bool { return sp.Step != nil && sp.Step.Stage == model.Cook }
+	return nil, p.History != nil && !p.History.Recorded && p.Product.Shape != model.Stirred && slices.ContainsFunc(p.History.Spans, cooks) &&
+		slices.ContainsFunc(p.Product.Foods(), moist)
 }
 
 // sparse: a record whose readings are more than five minutes apart somewhere. The times of a scan hold the changes of step as

@@ -33,7 +33,7 @@ func calm(t *testing.T) *Product {
 }
 
 func TestCautions(t *testing.T) {
-	always := "idealised shape, start assumed uniform"
+	always := "idealised shape, cooked food shrinks, start assumed uniform"
 	for _, c := range []struct {
 		name   string
 		change func(*Head, *Product)
@@ -81,6 +81,16 @@ func TestCautions(t *testing.T) {
 		}, "chill medium raised to the freezing point, " + always, "are bounds"},
 		{"below the freezing point", func(_ *Head, p *Product) { p.Samples.Coldest[2] = -1.2 }, "crossing freezing, " + always, "−1.2 °C"},
 		{"above the freezing point, below 0 °C", func(_ *Head, p *Product) { p.Samples.Coldest[2] = -0.5 }, always, ""},
+		{"freezing that is calculated", func(_ *Head, p *Product) {
+			p.Samples.Coldest[2], p.Product.Food.EnthalpyJkg = -18, func(c float64) float64 { return 3000 * c }
+		}, "freezing calculated, " + always, "supercooling is left out"},
+		{"layers, the first two without a gap", func(_ *Head, p *Product) {
+			m := p.Product.Food
+			p.Product.Shape, p.Product.Food = model.LayeredSlab, nil
+			p.Product.Layers = []model.Layer{{Food: m, ThicknessM: 0.01}, {Food: m, ThicknessM: 0.02, BelowM2KW: 0.004}, {Food: m, ThicknessM: 0.01}}
+		}, "idealised shape, layers touch perfectly, cooked food shrinks, start assumed uniform", "fast side: 1 and 2."},
+		{"nothing is cooked", func(_ *Head, p *Product) { p.History.Spans[0].Step.Stage = model.HoldHot }, "idealised shape, start assumed uniform", ""},
+		{"food without water", func(_ *Head, p *Product) { p.Product.Food.Waterless = true }, "idealised shape, start assumed uniform", ""},
 		{"no freezing point known, below 0 °C", func(_ *Head, p *Product) { p.Samples.Coldest[2], p.Product.Food.FreezingC = -0.5, nil }, "crossing freezing, " + always, ""},
 		{"composed, with a second run", func(_ *Head, p *Product) {
 			p.Product.Food.Composed, p.Further = true, []rules.Run{{Name: rules.LowConductivity, History: p.History}}

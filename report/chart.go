@@ -941,6 +941,10 @@ func surfacePlace(p *model.Product) (model.Place, bool) {
 		return model.Place{}, false
 	case model.Cylinder, model.Sphere:
 		return model.Place{UpM: p.Size.DiameterM / 2}, true
+	case model.Spheroid: // its side, which lies nearer to the middle of a long one
+		if p.Size.DiameterM < p.Size.ThicknessM {
+			return model.Place{AcrossM: p.Size.DiameterM / 2}, true
+		}
 	case model.ShortCylinder:
 		return model.Place{UpM: p.Size.LengthM / 2}, true
 	}
@@ -1032,14 +1036,12 @@ func (h *Head) spots(d *deciding, hist *model.History, axis *timeAxis) []spot {
 	return out
 }
 
-// profile makes the chart of temperature against depth at the ends of steps, through the deciding place, along the thickness.
+// profile makes the chart of temperature against depth at the ends of steps, past the deciding place; nil where there is none to draw: of
+// a record, and of a food that is mixed throughout.
 func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []float64) {
 	hist := d.history
-	if hist.Recorded {
-		return nil, nil
-	}
-	lo, hi, name := depthAxis(&p.Product)
-	if hi <= lo {
+	way := p.passage(d)
+	if way == nil {
 		return nil, nil
 	}
 	times := profileTimes(hist)
@@ -1047,18 +1049,25 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 	if p.Product.Inches {
 		in = unit.Length.Unit("in")
 	}
-	f := &chart{xName: say(name, in.Name()), yName: say("axis temperature", h.degree()), x0: 0, x1: in.Out(hi - lo), size: size, ends: ends}
-	f.xTicks = marks(ticksTo(0, f.x1, []float64{0.1, 0.25, 0.5, 1, 2, 5, 10, 20, 25, 50, 100, 200}, 9))
+	f := &chart{xName: say(way.name, in.Name()), yName: say("axis temperature", h.degree()), x0: in.Out(way.m[0]), x1: in.Out(way.m[len(way.m)-1]), size: size, ends: ends}
+	f.xTicks = marks(ticksTo(f.x0, f.x1, []float64{0.1, 0.25, 0.5, 1, 2, 5, 10, 20, 25, 50, 100, 200}, 9))
+	if f.x0 < 0 { // to both sides of a centre
+		for i := range f.xTicks {
+			f.xTicks[i].Label = strings.TrimLeft(f.xTicks[i].Label, "-−")
+		}
+	}
 	f.y0, f.y1 = math.Inf(1), math.Inf(-1)
 	for _, t := range times {
 		l := line{name: say("profile at", duration(t, nearest))}
-		const n = 48
-		for k := 0; k <= n; k++ {
-			at := d.place
-			at.UpM = lo + (hi-lo)*float64(k)/n
-			v := h.shown(hist.At(at, t))
-			l.x, l.y = append(l.x, in.Out(at.UpM-lo)), append(l.y, v)
-			f.y0, f.y1 = min(f.y0, v), max(f.y1, v)
+		for k, m := range way.m {
+			v := math.NaN()
+			if !math.IsNaN(m) {
+				v = h.shown(hist.At(way.places[k], t))
+				f.y0, f.y1 = min(f.y0, v), max(f.y1, v)
+			} else {
+				m = way.m[k-1]
+			}
+			l.x, l.y = append(l.x, in.Out(m)), append(l.y, v)
 		}
 		f.lines = append(f.lines, l)
 	}
@@ -1066,24 +1075,24 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 	f.y0, f.y1 = f.y0-room, f.y1+room
 	f.yTicks = ticksTo(f.y0, f.y1, []float64{1, 2, 5, 10, 20, 25, 50, 100}, 7)
 	for _, pt := range hist.Points {
-		if pt.Name != "centre" && pt.AcrossM == d.place.AcrossM && pt.AlongM == d.place.AlongM {
-			f.spots = append(f.spots, spot{pt.Name, in.Out(pt.UpM - lo), h.shown(hist.At(pt.Place, times[len(times)-1]))})
+		m, on := pt.UpM-way.places[0].UpM, pt.AcrossM == d.place.AcrossM && pt.AlongM == d.place.AlongM
+		if p.Product.Shape == model.Spheroid {
+			m, on = pt.UpM-pt.AcrossM, pt.UpM >= 0 && pt.AcrossM >= 0 && (pt.UpM == 0 || pt.AcrossM == 0)
+		}
+		if pt.Name != "centre" && on {
+			f.spots = append(f.spots, spot{pt.Name, in.Out(m), h.shown(hist.At(pt.Place, times[len(times)-1]))})
 		}
 	}
 	return f, times
 }
 
-// depthAxis is the way through the product: along the thickness, the axis or the radius; m, and the key of its words.
-func depthAxis(p *model.Product) (lo, hi float64, name string) {
-	switch p.Shape {
-	case model.Stirred, nil:
-		return 0, 0, ""
-	case model.Cylinder, model.Sphere:
-		return 0, p.Size.DiameterM / 2, "axis radius"
-	case model.ShortCylinder:
-		return -p.Size.LengthM / 2, p.Size.LengthM / 2, "axis depth"
+// passage is the way that the profile of a product is drawn along; nil if there is no profile.
+func (p *Product) passage(d *deciding) *passage {
+	h := d.history
+	if h.Recorded || len(h.Spans) == 0 || h == p.run(rules.WellMixed) {
+		return nil
 	}
-	return -p.Size.ThicknessM / 2, p.Size.ThicknessM / 2, "axis depth"
+	return passageOf(&p.Product, d.place)
 }
 
 // profileTimes are three to six instants: the ends of steps, and the middles of the longest ones where there are too few.

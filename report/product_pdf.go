@@ -937,19 +937,22 @@ func (x *sheet) moves() string {
 // profileSentence gives surface and middle at each time of the profile.
 func (x *sheet) profileSentence(times []float64) string {
 	hist := x.decides.history
-	lo, hi, _ := depthAxis(&x.p.Product)
+	way := x.p.passage(x.decides)
 	var s []string
 	for _, t := range times {
-		a, b, c := x.decides.place, x.decides.place, x.decides.place
-		a.UpM, b.UpM, c.UpM = lo, (lo+hi)/2, hi
-		if lo == 0 {
-			s = append(s, say("profile round", duration(t, nearest), x.head.temperature(hist.At(a, t), x.cautious(t)), x.head.temperature(hist.At(c, t), x.cautious(t))))
-		} else {
-			s = append(s, say("profile flat", duration(t, nearest), x.head.temperature(hist.At(a, t), x.cautious(t)), x.head.temperature(hist.At(b, t), x.cautious(t)),
-				x.head.temperature(hist.At(c, t), x.cautious(t))))
+		args := []any{duration(t, nearest)}
+		for _, at := range way.ends {
+			args = append(args, x.head.temperature(hist.At(at, t), x.cautious(t)))
 		}
+		s = append(s, say(way.words, args...))
 	}
 	out := say("profile sentence", strings.Join(s, "; "))
+	if x.p.Product.Shape == model.Spheroid {
+		out = say("profile sentence spheroid", strings.Join(s, "; "))
+	}
+	if x.p.Product.Shape == model.LayeredSlab {
+		out += say("profile joints")
+	}
 	if name := x.p.nameOf(hist); name != "" {
 		out = say("profile "+name) + out
 	}
@@ -978,6 +981,17 @@ func (x *sheet) sizes() string {
 		case "Surface area":
 			s = append(s, say("size area", plain(z.AreaM2, 4, nearest)))
 		}
+	}
+	if p == model.LayeredSlab {
+		var layers []string
+		for i, y := range x.p.Product.Layers {
+			if y.BelowM2KW > 0 {
+				layers = append(layers, say("size gap", i+1, y.Food.Name, length(&x.p.Product, y.ThicknessM), plain(y.BelowM2KW, 5, nearest)))
+			} else {
+				layers = append(layers, say("size layer", i+1, y.Food.Name, length(&x.p.Product, y.ThicknessM)))
+			}
+		}
+		s = append(s, say("size thickness")+" "+length(&x.p.Product, z.ThicknessM), say("size layers", len(layers), strings.Join(layers, ", ")))
 	}
 	return strings.Join(s, ", ")
 }

@@ -23,6 +23,11 @@ func (d *doc) sketch(p *model.Product, at model.Place, name string, h float64) {
 		s.box(p.Size.WidthM, p.Size.ThicknessM, func(q model.Place) float64 { return q.AcrossM }, say("sketch across"), say("size width"), say("size thickness"), false)
 		s.x += 64
 		s.box(p.Size.LengthM, p.Size.ThicknessM, func(q model.Place) float64 { return q.AlongM }, say("sketch along"), say("size length"), say("size thickness"), true)
+	case model.Spheroid:
+		s.oval()
+	case model.LayeredSlab:
+		s.slab()
+		s.layers()
 	case model.Stirred:
 		s.pot()
 	default:
@@ -152,6 +157,71 @@ func (s *section) round() {
 	s.measure(cx-r, cy+r+3, cx+r, cy+r+3, s.sizeWords(say("size diameter"), s.p.Size.DiameterM, 2*r+16))
 	scale := r / (s.p.Size.DiameterM / 2)
 	s.marks(func(q model.Place) (float64, float64) { return cx + q.UpM*scale, cy }, cx+r+4, true)
+}
+
+// oval is the section of a spheroid through its axis, which stands upright.
+func (s *section) oval() {
+	thick, wide := s.p.Size.ThicknessM, s.p.Size.DiameterM
+	scale := min(60/wide, (s.h-14)/thick)
+	rx, ry := max(wide*scale/2, 4), max(thick*scale/2, 4)
+	cx, cy := s.x+18+rx, s.y+3+ry
+	p := s.d.pdf
+	p.pencil(heavy)
+	const n = 72
+	for k := 0; k <= n; k++ {
+		sin, cos := math.Sincos(2 * math.Pi * float64(k) / n)
+		if k == 0 {
+			p.moveTo(cx+rx*cos, cy+ry*sin)
+		} else {
+			p.lineTo(cx+rx*cos, cy+ry*sin)
+		}
+	}
+	p.stroke()
+	axis := thin
+	axis.dash = []float64{6, 2, 1, 2}
+	p.line(axis, cx, cy-ry-1.5, cx, cy+ry+1.5)
+	s.measure(cx-rx-6, cy-ry, cx-rx-6, cy+ry, s.sizeWords(say("size thickness"), thick, 2*ry))
+	s.measure(cx-rx, cy+ry+3, cx+rx, cy+ry+3, s.sizeWords(say("size diameter"), wide, 2*rx+16))
+	s.marks(func(q model.Place) (float64, float64) { return cx + q.AcrossM/wide*2*rx, cy - q.UpM/thick*2*ry }, cx+rx+4, true)
+}
+
+// layers draws the joints of a layered slab into it, to scale, and leads each layer to its number and food. A joint with a contact
+// resistance is broken.
+func (s *section) layers() {
+	x, w := s.x+18, 84.0
+	y, h := s.y+6, s.h-12
+	p, t := s.d.pdf, s.p.Size.ThicknessM
+	gap := thin
+	gap.dash = []float64{3, 2}
+	tall := height(small)
+	label := y + 0.4
+	over := float64(len(s.p.Layers)) * tall // what the names need below
+	at := y
+	for i := range s.p.Layers {
+		l := &s.p.Layers[i]
+		middle := at + l.ThicknessM/t*h/2
+		at += l.ThicknessM / t * h
+		if i < len(s.p.Layers)-1 {
+			k := thin
+			if l.BelowM2KW > 0 {
+				k = gap
+			}
+			p.line(k, x, at, x+w, at)
+		}
+		if over > h { // too many to be named: the sentence below the picture names them
+			continue
+		}
+		label = max(label, min(middle-tall/2, y+h-over))
+		over -= tall
+		words := s.d.clean(say("sketch layer", i+1, l.Food.Name))
+		for widthMM(words, small, false) > w/2-8 && len(words) > 4 {
+			words = string([]rune(words)[:len([]rune(words))-2]) + "…"
+		}
+		s.line(x, middle, x+3, label+tall/2)
+		p.box(white, x+3.5, label+0.3, widthMM(words, small, false)+1, tall-0.6)
+		s.d.put(x+4, label+0.72*tall, words, small, false)
+		label += tall
+	}
 }
 
 // box is a rectangular section, or the section along the axis of a short cylinder; wide and tall in m.

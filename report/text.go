@@ -32,75 +32,77 @@ func NewText(w io.Writer, h *Head) *Text {
 
 // textWords are the texts that only report.txt has.
 var textWords = map[string]string{
-	"title":         "slowpoint: calculated temperatures held against the limits that the user entered",
-	"order":         "This text says the same as the PDF reports. First the plan, then all products with their verdicts, then each product, then the known-answer cases and the words used.",
-	"courses":       "The whole courses of temperature are in results.xlsx and results.json.",
-	"rounding":      "Temperatures stand in the user's unit first, with the other unit in brackets. Results are rounded to the unfavourable side; limits are not rounded.",
-	"plan":          "Plan",
-	"file":          "File: %s",
-	"digest":        "SHA-256 of the file: %s",
-	"source":        "Made by the import from: %s, SHA-256 %s",
-	"version":       "Program: slowpoint %s",
-	"date":          "Date: %s",
-	"item":          "%s: %s",
-	"blank":         "(blank)",
-	"problems":      "Problems in the plan",
-	"no problems":   "None.",
-	"problem":       "%s, %s",
-	"refused":       "Products that could not be calculated",
-	"refused one":   "%s (%s)",
-	"list":          "All products, the most urgent first",
-	"list none":     "No product was calculated.",
-	"list one":      "%d. %s: %s.",
-	"list deciding": " Deciding limit: %s.",
-	"list room":     " Margin: %s.",
-	"list why":      " Why: %s",
-	"list cautions": " Cautions: %d.",
-	"product":       "Product %d: %s",
-	"verdict":       "Verdict: %s. %s",
-	"what":          "What was calculated",
-	"limits":        "Limits, the most urgent first",
-	"limits none":   "No limit was judged.",
-	"group":         "Group %s (%s): %s.",
-	"group by":      " Decided by %s.",
-	"limit":         "Limit %d: %s: %s",
-	"limit low":     " (second run, at 0.9 of the conductivity)",
-	"limit mixed":   " (run as well mixed)",
-	"course":        "Course of temperature",
-	"recorded":      "These temperatures were measured.",
-	"predicted":     "These temperatures were calculated, not measured.",
-	"step":          "%s, %s to %s",
-	"step medium":   "surroundings at the end %s",
-	"coldest":       "coldest at the end %s (%s)",
-	"hottest":       "hottest at the end %s (%s)",
-	"mean":          "mean at the end %s",
-	"point":         "%s at the end %s",
-	"deciding":      "where the tightest limit is decided (%s) at the end %s",
-	"moves":         "How the slowest place moves",
-	"lever":         "The biggest lever",
-	"profile":       "Profile through the product",
-	"factors":       "What the numbers rest on",
-	"factor":        "%s: %s",
-	"factor from":   " (from: %s)",
-	"method":        "Method: %s.",
-	"error":         "Error estimate: %s at any place, from half a minute after each change of surroundings.",
-	"interval":      "Courses are written every %s and at each change of step; limits are judged from the field itself, not from this interval.",
-	"bound":         "From %s on the temperatures are bounds: %s",
-	"cautions":      "Cautions for this run",
-	"cautions none": "None beyond the standing caution.",
-	"input":         "Input: what was typed and what was used",
-	"typed":         "%s, %s: typed %q, used %s",
-	"default":       "%s, %s: left blank, used %s",
-	"because":       " (%s)",
-	"known":         "Known-answer cases solved by this program on this machine",
-	"known none":    "None were solved in this run.",
-	"known one":     "%s: expected %s, got %s, allowance %s %s: %s. Source: %s",
-	"known good":    "within the allowance",
-	"known bad":     "OUTSIDE THE ALLOWANCE: do not use these results",
-	"caution":       "Caution",
-	"changes":       "When to look at the process again",
-	"glossary":      "Words used",
-	"end":           "End of the report.",
+	"title":          "slowpoint: calculated temperatures held against the limits that the user entered",
+	"order":          "This text says the same as the PDF reports. First the plan, then all products with their verdicts, then each product, then the known-answer cases and the words used.",
+	"courses":        "The whole courses of temperature are in results.xlsx and results.json.",
+	"rounding":       "Temperatures stand in the user's unit first, with the other unit in brackets. Results are rounded to the unfavourable side; limits are not rounded.",
+	"plan":           "Plan",
+	"file":           "File: %s",
+	"digest":         "SHA-256 of the file: %s",
+	"source":         "Made by the import from: %s, SHA-256 %s",
+	"version":        "Program: slowpoint %s",
+	"date":           "Date: %s",
+	"item":           "%s: %s",
+	"blank":          "(blank)",
+	"problems":       "Problems in the plan",
+	"no problems":    "None.",
+	"problem":        "%s, %s",
+	"refused":        "Products that could not be calculated",
+	"refused one":    "%s (%s)",
+	"list":           "All products, the most urgent first",
+	"list none":      "No product was calculated.",
+	"list one":       "%d. %s: %s.",
+	"list deciding":  " Deciding limit: %s.",
+	"list room":      " Margin: %s.",
+	"list why":       " Why: %s",
+	"list cautions":  " Cautions: %d.",
+	"product":        "Product %d: %s",
+	"verdict":        "Verdict: %s. %s",
+	"what":           "What was calculated",
+	"limits":         "Limits, the most urgent first",
+	"limits none":    "No limit was judged.",
+	"group":          "Group %s (%s): %s.",
+	"group by":       " Decided by %s.",
+	"limit":          "Limit %d: %s: %s",
+	"properties":     "%s at %s: conductivity %s W/(m·K), density %s kg/m³, specific heat %s J/(kg·K)",
+	"properties ice": ", ice %s",
+	"limit low":      " (second run, at 0.9 of the conductivity)",
+	"limit mixed":    " (run as well mixed)",
+	"course":         "Course of temperature",
+	"recorded":       "These temperatures were measured.",
+	"predicted":      "These temperatures were calculated, not measured.",
+	"step":           "%s, %s to %s",
+	"step medium":    "surroundings at the end %s",
+	"coldest":        "coldest at the end %s (%s)",
+	"hottest":        "hottest at the end %s (%s)",
+	"mean":           "mean at the end %s",
+	"point":          "%s at the end %s",
+	"deciding":       "where the tightest limit is decided (%s) at the end %s",
+	"moves":          "How the slowest place moves",
+	"lever":          "The biggest lever",
+	"profile":        "Profile through the product",
+	"factors":        "What the numbers rest on",
+	"factor":         "%s: %s",
+	"factor from":    " (from: %s)",
+	"method":         "Method: %s.",
+	"error":          "Error estimate: %s at any place, from half a minute after each change of surroundings.",
+	"interval":       "Courses are written every %s and at each change of step; limits are judged from the field itself, not from this interval.",
+	"bound":          "From %s on the temperatures are bounds: %s",
+	"cautions":       "Cautions for this run",
+	"cautions none":  "None beyond the standing caution.",
+	"input":          "Input: what was typed and what was used",
+	"typed":          "%s, %s: typed %q, used %s",
+	"default":        "%s, %s: left blank, used %s",
+	"because":        " (%s)",
+	"known":          "Known-answer cases solved by this program on this machine",
+	"known none":     "None were solved in this run.",
+	"known one":      "%s: expected %s, got %s, allowance %s %s: %s. Source: %s",
+	"known good":     "within the allowance",
+	"known bad":      "OUTSIDE THE ALLOWANCE: do not use these results",
+	"caution":        "Caution",
+	"changes":        "When to look at the process again",
+	"glossary":       "Words used",
+	"end":            "End of the report.",
 }
 
 func (t *Text) put(s string) { _, _ = t.buf.WriteString(s) } // the writer keeps the first error for Flush
@@ -256,7 +258,7 @@ func (t *Text) course(x *sheet) {
 	if len(p.Samples.ColdestAt) > 0 && !p.History.Recorded {
 		t.heading(3, "moves")
 		t.plain(x.moves())
-		if lo, hi, _ := depthAxis(&p.Product); hi > lo {
+		if p.passage(x.decides) != nil {
 			t.heading(3, "profile")
 			t.plain(x.profileSentence(profileTimes(x.decides.history)))
 		}
@@ -304,6 +306,21 @@ func (t *Text) basis(x *sheet) {
 			s += fmt.Sprintf(textWords["factor from"], r[2])
 		}
 		t.item(s)
+	}
+	if rows := x.propertyRows(); len(rows) > 0 {
+		t.plain(say("properties title") + ":")
+		food := ""
+		for _, r := range rows {
+			if r[0] != "" {
+				food = r[0]
+			}
+			s := fmt.Sprintf(textWords["properties"], food, r[1], r[2], r[3], r[4])
+			if r[5] != "" {
+				s += fmt.Sprintf(textWords["properties ice"], r[5])
+			}
+			t.item(s)
+		}
+		t.plain(x.propertiesSentence())
 	}
 	w := x.p.History
 	t.line("method", w.Method)

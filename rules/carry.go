@@ -9,8 +9,12 @@ import (
 // CarryOver is the key of the caution on a limit that is met only by what the food gets after its heating.
 const CarryOver = "only by carry-over"
 
+// NoCarryOver is the key of the caution on a limit that would be met only so, and from a dry surface of moist food, which is not counted.
+const NoCarryOver = "carry-over not counted"
+
 // carryOver judges a met hold, table or lethality again with the heating stages alone; where it is not met there, the finding says
-// so in numbers: what the slowest place had when it left the heat, and what it rose to.
+// so in numbers: what the slowest place had when it left the heat, and what it rose to. Of moist food that stands open in air, calculated
+// without the water that it loses, what comes after the heating is not counted: the finding is that of the heating alone.
 func (v *view) carryOver(f *Finding) {
 	l := v.l
 	heated := l.Kind == Hold && l.ToC == nil || l.Kind == HoldTable || l.Kind == Lethality
@@ -37,9 +41,33 @@ func (v *view) carryOver(f *Finding) {
 	if g.Verdict == Met || g.Place == nil {
 		return
 	}
-	if says := v.rose(w, &g); says != "" {
-		f.carriedOver(says)
+	says, moist, after := v.rose(w, &g)
+	switch {
+	case says == "":
+	case v.dry(after):
+		*f = l.Kind.judge(newView(&hot, v.c))
+		f.Limit = l
+		f.Notes = append(f.Notes, says+". "+say("carry-over not counted", nil))
+		f.Cautions = append(f.Cautions, NoCarryOver)
+	case !v.h.Recorded && !v.enclosed(after):
+		f.carriedOver(says + moist + ".")
+	default:
+		f.carriedOver(says + ".")
 	}
+}
+
+// dry tells whether the first step of a stretch is calculated as dry though the food is moist and lies open: in air whose film the
+// program takes, where nobody said dry or wet.
+func (v *view) dry(iv interval) bool {
+	if v.h.Recorded || v.h.Product == nil {
+		return false
+	}
+	moist := false
+	for _, f := range v.h.Product.Foods() {
+		moist = moist || !f.Waterless
+	}
+	e := v.first(iv)
+	return moist && e != nil && (e.Surface == model.StillAir || e.Surface == model.MovingAir) && e.FilmW == nil && e.Wet == nil && (e.Cover == nil || e.Cover == model.Open)
 }
 
 // carriedOver enters the sentence on a limit that is met only by what the food gets after its heating.
@@ -49,9 +77,9 @@ func (f *Finding) carriedOver(says string) {
 	f.Cautions = append(f.Cautions, CarryOver)
 }
 
-// rose says what the slowest place had at the end of a heating, and the highest that it came to before the next one. Of several
-// heatings it is the one after which the place became warmest.
-func (v *view) rose(hot *view, g *Finding) string {
+// rose says what the slowest place had at the end of a heating, and the highest that it came to before the next one, what
+// water does to that, and when it was. Of several heatings it is the one after which the place became warmest.
+func (v *view) rose(hot *view, g *Finding) (says, moist string, after interval) {
 	p := v.c.path(*g.Place, interval{0, v.c.end})
 	left, rose, from := math.NaN(), math.Inf(-1), interval{}
 	for i, iv := range hot.stages {
@@ -70,33 +98,37 @@ func (v *view) rose(hot *view, g *Finding) string {
 		}
 	}
 	if math.IsNaN(left) {
-		return ""
+		return "", "", from
 	}
 	l := v.l
-	h := holes{"place": g.PlaceName, "left": l.degrees(left, -1), "rose": l.degrees(rose, -1)}
+	h := holes{"met": say("carried", nil), "place": g.PlaceName, "left": l.degrees(left, -1), "rose": l.degrees(rose, -1)}
 	for _, r := range v.runs {
 		if math.Abs(r.b-from.a) < sameS {
 			h["stage"] = r.stage.Name
 		}
 	}
+	if v.dry(from) {
+		h["met"] = say("would be carried", nil)
+	}
 	key := "carry-over"
 	if rose < left+0.05 {
 		key = "carry-over kept"
 	}
-	says := say(key, h)
-	if !v.h.Recorded && !v.enclosed(from) {
-		says += say(key+" moist", nil)
-	}
-	return says + "."
+	return say(key, h), say(key+" moist", nil), from
 }
 
 // enclosed tells whether the first step of a stretch needs no word on evaporation: its wet surface is calculated, or it is covered.
 func (v *view) enclosed(iv interval) bool {
+	e := v.first(iv)
+	return e != nil && (e.Wet != nil && *e.Wet || e.Cover != nil && e.Cover != model.Open)
+}
+
+// first is what surrounds the food in the first step of a stretch; nil if there is none.
+func (v *view) first(iv interval) *model.Exposure {
 	for _, sp := range v.h.Spans {
 		if sp.Step != nil && sp.StartS >= iv.a-sameS {
-			e := &sp.Step.Exposure
-			return e.Wet != nil && *e.Wet || e.Cover != nil && e.Cover != model.Open
+			return &sp.Step.Exposure
 		}
 	}
-	return false
+	return nil
 }

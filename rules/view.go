@@ -376,12 +376,13 @@ func (v *view) lacks() *model.Stage {
 	return nil
 }
 
-// windows cuts the chain for the limits that have a clock.
+// windows cuts the chain for the limits that have a clock. A thaw is a beginning, and an end only of what had to be frozen.
 func (v *view) windows() []window {
+	frozen := v.l.ToC != nil && *v.l.ToC < 0
 	starts := []float64{0}
 	var heats []float64
 	for _, r := range v.runs {
-		if r.stage == model.Cook || r.stage == model.Reheat {
+		if r.stage == model.Cook || r.stage == model.Reheat || frozen && r.stage == model.Thaw {
 			heats = append(heats, r.a)
 		}
 		if (r.stage == model.Cook || r.stage == model.Reheat || r.stage == model.Thaw) && r.a > starts[len(starts)-1] {

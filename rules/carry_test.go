@@ -1,0 +1,54 @@
+package rules
+
+import (
+	"strings"
+	"testing"
+
+	"slowpoint/model"
+)
+
+// What moist food gains while it stands open in air is counted only where the water that it loses was calculated, or where a cover or
+// a typed film stands for it: a thick slab leaves the oven at 46 °C inside and rises to 58 °C or more.
+func TestCarryOverOfMoistFood(t *testing.T) {
+	wet, dry, lid, film := true, false, 0.08, 6.
+	for _, x := range []struct {
+		name      string
+		rest      model.Exposure
+		waterless bool
+		verdict   Verdict
+		says      string // in the notes; "": none about carry-over
+	}{
+		{"open in still air, nothing said", model.Exposure{Surface: model.StillAir}, false, NotMet, "It would be met only through the rise after the cook"},
+		{"open in moving air, nothing said", model.Exposure{Surface: model.MovingAir, AirMS: &film}, false, NotMet, "not counted"},
+		{"open by the column Cover", model.Exposure{Surface: model.StillAir, Cover: model.Open}, false, NotMet, "not counted"},
+		{"wet, with its evaporation", model.Exposure{Surface: model.StillAir, Wet: &wet}, false, Met, "Met only through the rise after the cook"},
+		{"said to be dry", model.Exposure{Surface: model.StillAir, Wet: &dry}, false, Met, "a moist surface loses heat"},
+		{"under a lid", model.Exposure{Surface: model.StillAir, Cover: model.LooseLid, WrapM2KW: &lid}, false, Met, "Met only"},
+		{"a typed film", model.Exposure{Surface: model.Film, FilmW: &film}, false, Met, "a moist surface loses heat"},
+		{"food without water", model.Exposure{Surface: model.StillAir}, true, Met, "Met only"},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			q := model.Properties{KWmK: 0.47, RhoKgM3: 1050, CJkgK: 3500}
+			food := &model.Material{Name: "test food", Source: "test input", Waterless: x.waterless, Props: func(float64) model.Properties { return q }}
+			cook, rest := filmStep(model.Cook, 95, 165, 31), filmStep(model.Rest, 25, 24, 1)
+			medium := rest.Medium
+			rest.Exposure = x.rest
+			rest.Medium = medium
+			h, err := model.Solve(model.Product{Name: "P", Shape: model.Slab, Size: model.Size{ThicknessM: 0.094}, Food: food, StartC: 7}, []model.Step{cook, rest}, model.Options{})
+			if err != nil {
+				t.Fatal(err)
+			}
+			l := Limit{Name: "L", Kind: Hold, FromC: c(55), TimeS: c(0), Counting: Total, Stages: st(model.Cook, model.Rest), Applies: Applies{All: true}}
+			f := Judge([]Limit{l}, nil, Subject{Product: "P", History: h}).Findings[0]
+			if f.Verdict != x.verdict || !strings.Contains(strings.Join(f.Notes, "\n"), x.says) {
+				t.Errorf("%v, %q; centre %.1f °C after the cook, %.1f °C later", f.Verdict, f.Notes, h.At(model.Place{}, 5700), h.At(model.Place{}, 7200))
+			}
+			if f.Limit == nil || len(f.Limit.Stages) != 2 {
+				t.Error("the finding is of another limit")
+			}
+			if (f.CarryOver != "") != (f.Verdict == Met) {
+				t.Errorf("carry-over %q of a limit that is %v", f.CarryOver, f.Verdict)
+			}
+		})
+	}
+}
