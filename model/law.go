@@ -171,6 +171,17 @@ func (l *law) temperature(h float64) float64 {
 	return t
 }
 
+// slide gives the Kirchhoff integral of a heat content, W/m, and its slope by it, the diffusivity, m²/s.
+func (l *law) slide(h float64) (u, du float64) {
+	r, x, per := l.row(h)
+	if x > 1 {
+		_, u, _, du := l.at(h)
+		return u, du
+	}
+	b := &r.u
+	return b[0] + x*(b[1]+x*(b[2]+x*b[3])), (b[1] + x*(2*b[2]+x*3*b[3])) * per
+}
+
 // kirchhoff gives the integral of a heat content, W/m.
 func (l *law) kirchhoff(h float64) float64 {
 	r, x, _ := l.row(h)
@@ -202,4 +213,12 @@ func (l *law) heat(c float64) float64 {
 		h = next
 	}
 	return h
+}
+
+// thin gives the slope of the temperature by the heat content, m³·K/J.
+func (l *law) thin(h float64) float64 {
+	r, x, per := l.row(h)
+	x = min(x, 1)
+	a := &r.t
+	return (a[1] + x*(2*a[2]+x*3*a[3])) * per
 }

@@ -26,6 +26,8 @@ type marcher interface {
 	firstS() float64
 	// span gives the coldest and hottest temperature of the state, °C.
 	span() (low, high float64)
+	// keepsHeat gives the laws of the nodes if it keeps heat contents in a track; nil for temperatures.
+	keepsHeat() []*law
 	// touches gives the nodes that a skin lies on.
 	touches(k *skin) []int
 	// save and restore keep a copy of the state.
@@ -66,7 +68,7 @@ func (s *solver) rougher(e effort, ran []Span) effort { return effort{e.more, e.
 // How the difference of the two marches goes over into an error: that of a march with four or six times the error lies three or five
 // errors off, less some for doubt.
 const (
-	volumesWorse     = 2.3
+	volumesWorse     = 3
 	polynomialsWorse = 3
 )
 
@@ -78,7 +80,7 @@ const marchGoalK = 0.019
 
 // march solves the product by marching, with more effort until the estimate of the error meets its goal, or three times.
 func (s *solver) march() (*History, error) {
-	e := effort{more: 1, tolK: 2e-3}
+	e := effort{more: 1, tolK: 6e-3}
 	worse := float64(volumesWorse)
 	if s.polynomial() {
 		e.tolK, worse = 8e-3, polynomialsWorse
@@ -103,7 +105,7 @@ func (s *solver) march() (*History, error) {
 		if s.polynomial() {
 			e.more *= min(1.3, 1+0.1*by)
 		} else {
-			e.more *= min(2, 1.15*math.Sqrt(by))
+			e.more *= min(1.5, 1.15*math.Sqrt(by))
 		}
 		e.tolK /= min(6, 1.3*by)
 	}
@@ -278,12 +280,12 @@ func (f *marched) surfaceRange(k *skin, startS, durS float64) surfaceRange {
 		if t < startS || t > startS+durS {
 			continue
 		}
-		c, _ := f.track.row(i)
 		for _, j := range spots {
-			r.lowC, r.highC = min(r.lowC, c[j]), max(r.highC, c[j])
+			c := f.track.kept(i, j)
+			r.lowC, r.highC = min(r.lowC, c), max(r.highC, c)
 		}
 		if len(spots) > 0 && (first || t == startS) { // of two instants at a change the one after it
-			r.startC, first = c[spots[0]], false
+			r.startC, first = f.track.kept(i, spots[0]), false
 		}
 	}
 	return r
@@ -351,7 +353,7 @@ type mesh interface {
 }
 
 func (f *marched) course(x coord, times, out []float64) {
-	if m, ok := f.mesh.(weighted); ok {
+	if m, ok := f.mesh.(weighted); ok && f.track.laws == nil && f.state.keepsHeat() == nil {
 		w := m.placeWeights(x)
 		for i, t := range times {
 			out[i] = f.track.sum(f.track.find(t), w)
@@ -406,9 +408,13 @@ func (f *marched) differs(h *History, rough *marched) float64 {
 	mine, other, there := make([]float64, f.track.n), make([]float64, rough.track.n), make([]float64, f.track.n)
 	end := rough.track.times[len(rough.track.times)-1]
 	onto := rough.mesh.onto(f.mesh)
+	grow := 1.4
+	if f.track.laws != nil { // a front makes every node turn in its own time
+		grow = 1.1
+	}
 	for i := range h.Spans {
 		sp := &h.Spans[i]
-		for tau := h.settle; ; tau *= 1.4 {
+		for tau := h.settle; ; tau *= grow {
 			t := min(sp.StartS+tau, sp.EndS)
 			f.track.all(f.track.find(t), mine)
 			rough.track.all(rough.track.find(min(t, end)), other)
@@ -437,6 +443,7 @@ func (s *solver) newMarched(e effort) *marched {
 		s.layLine(f, laws, e)
 	}
 	f.track.n = len(f.mesh.weights())
+	f.track.laws = f.state.keepsHeat()
 	f.now = marchedShot{f, make([]float64, f.track.n)}
 	return f
 }
@@ -594,7 +601,7 @@ func (s *solver) lawsOf() []*law {
 
 // How many volumes a half axis gets at first: of one axis, and of more where a front moves through them.
 const (
-	lineNodes = 48
+	lineNodes = 84
 	cutNodes  = 14
 )
 

@@ -25,7 +25,7 @@ type link struct {
 const perfectM2KW = 1e-7
 
 // crowd is how much closer nodes stand at a face than at the centre: e to this power.
-const crowd = 1.8
+const crowd = 2.4
 
 // depths gives the depths below a face of n+1 nodes, m, from 0 to r.
 func depths(r float64, n int) []float64 {
@@ -120,12 +120,13 @@ type lineMarch struct {
 
 	h, rate              []float64 // heat contents, J/m³, and their slopes, J/(m³·s), now
 	h1, h2, guess        []float64
-	b, f0, f1, f2        []float64 // W/m²
-	temp, dt, u, du      []float64 // of the last look: temperature, its slope by h, Kirchhoff integral, its slope by h
-	low, diag, up, delta []float64 // the three diagonals and the right side
-	qs                   [2]float64
-	inJ                  float64 // heat that came in through the faces since the start, J/m²
-	fresh                bool    // no step since the surroundings changed: nothing to guess from
+	b, f0, f1, f2        []float64  // W/m²
+	temp, dt, u, du      []float64  // of the last look: temperature, its slope by h, Kirchhoff integral, its slope by h
+	low, diag, up, delta []float64  // the three diagonals and the right side
+	qs                   [2]float64 // flow over each face at the end of the last solve, W/m²: of the equations that were solved, so that what comes in is what is gained
+	q0, q2               float64    // flow over both faces now and after the last try, W/m²
+	tryJ, inJ            float64    // heat that came in over the faces in the last try, and since the start, J/m²
+	fresh                bool       // no step since the surroundings changed: nothing to guess from
 }
 
 func newLineMarch(g *lineGrid, laws []*law) *lineMarch {
@@ -143,10 +144,22 @@ var (
 	trErrorK = (-3*trGamma*trGamma + 4*trGamma - 2) / (12 * (2 - trGamma))
 )
 
-// look reads temperatures and Kirchhoff integrals of heat contents.
+// look reads Kirchhoff integrals of heat contents, and temperatures where flows need them: at faces and joints.
 func (m *lineMarch) look(h []float64) {
-	for i, x := range h {
-		m.temp[i], m.u[i], m.dt[i], m.du[i] = m.laws[m.food[i]].at(x)
+	if len(m.laws) == 1 {
+		l := m.laws[0]
+		for i, x := range h {
+			m.u[i], m.du[i] = l.slide(x)
+		}
+	} else {
+		for i, x := range h {
+			m.u[i], m.du[i] = m.laws[m.food[i]].slide(x)
+		}
+	}
+	for _, p := range m.parts {
+		for _, i := range p {
+			m.temp[i], _, m.dt[i], _ = m.laws[m.food[i]].at(h[i])
+		}
 	}
 }
 
@@ -204,11 +217,16 @@ func (m *lineMarch) begin(tau float64) {
 			m.rate[(n-1)*side] = 0
 		}
 	}
+	m.q0 = m.qs[0] + m.qs[1]
 	m.fresh = true
 }
 
-// newtonK is how small the last correction of a temperature must be, K; what is left is its square.
-const newtonK = 1e-5
+// Newton's method ends with a correction this small, K, or, where no node passed its freezing point, with one whose square is.
+const newtonK, newtonSmoothK = 1e-5, 2e-3
+
+// unfrozenK is the conductivity that turns Kirchhoff integrals into temperatures where only their size counts, W/(m·K): below that of any
+// food that freezes, so that temperatures come out large.
+const unfrozenK = 0.2
 
 // solve finds w·h = b + a·F(h) at tau, from h on; it says whether it did.
 func (m *lineMarch) solve(h, b []float64, a, tau float64) bool {
@@ -243,14 +261,20 @@ func (m *lineMarch) solve(h, b []float64, a, tau float64) bool {
 				}
 			}
 		}
-		m.factor()
-		m.back(m.delta)
-		worst := 0.0
+		m.factor(m.delta)
+		worst, passed := 0.0, false
 		for i, d := range m.delta {
-			h[i] += d
-			worst = max(worst, math.Abs(d*m.dt[i]))
+			was := h[i]
+			h[i] = was + d
+			passed = passed || (was < 0) != (h[i] < 0)
+			if d = math.Abs(d * m.du[i]); !(d <= worst) {
+				worst = d
+			}
 		}
-		if worst < newtonK {
+		worst /= unfrozenK
+		m.qs[0] += slope[0] * m.delta[0]
+		m.qs[1] += slope[1] * m.delta[n-1]
+		if worst < newtonK || worst < newtonSmoothK && !passed {
 			return true
 		}
 		if math.IsNaN(worst) {
@@ -260,23 +284,43 @@ func (m *lineMarch) solve(h, b []float64, a, tau float64) bool {
 	return false
 }
 
-// factor brings the three diagonals to a form that back uses.
-func (m *lineMarch) factor() {
-	m.diag[0] = 1 / m.diag[0]
-	for i := 1; i < len(m.diag); i++ {
-		m.low[i] *= m.diag[i-1]
-		m.diag[i] = 1 / (m.diag[i] - m.low[i]*m.up[i-1])
+// factor brings the three diagonals to a form that back uses, and solves them for y on the way.
+func (m *lineMarch) factor(y []float64) {
+	n := len(y)
+	low, diag, up := m.low[:n], m.diag[:n], m.up[:n]
+	d := 1 / diag[0]
+	diag[0] = d
+	last := y[0]
+	for i := 1; i < n; i++ {
+		l := low[i] * d
+		low[i] = l
+		d = 1 / (diag[i] - l*up[i-1])
+		diag[i] = d
+		last = y[i] - l*last
+		y[i] = last
+	}
+	last *= d
+	y[n-1] = last
+	for i := n - 2; i >= 0; i-- {
+		last = (y[i] - up[i]*last) * diag[i]
+		y[i] = last
 	}
 }
 
+// back solves the factored diagonals for y.
 func (m *lineMarch) back(y []float64) {
 	n := len(y)
+	low, diag, up := m.low[:n], m.diag[:n], m.up[:n]
+	last := y[0]
 	for i := 1; i < n; i++ {
-		y[i] -= m.low[i] * y[i-1]
+		last = y[i] - low[i]*last
+		y[i] = last
 	}
-	y[n-1] *= m.diag[n-1]
+	last *= diag[n-1]
+	y[n-1] = last
 	for i := n - 2; i >= 0; i-- {
-		y[i] = (y[i] - m.up[i]*y[i+1]) * m.diag[i]
+		last = (y[i] - up[i]*last) * diag[i]
+		y[i] = last
 	}
 }
 
@@ -297,8 +341,8 @@ func (m *lineMarch) try(tau, d float64) float64 {
 	if !m.solve(m.h1, m.b, a, tau+trGamma*d) {
 		return math.Inf(1)
 	}
-	q1 := m.qs[0] + m.qs[1]
 	a1 := 1 / (trGamma * (2 - trGamma))
+	m.tryJ = a1 * a * (m.q0 + m.qs[0] + m.qs[1])
 	for i := range m.b {
 		m.f1[i] = (m.w[i]*m.h1[i] - m.b[i]) / a
 		m.b[i] = m.w[i] * (a1*m.h1[i] - (a1-1)*m.h[i])
@@ -307,7 +351,8 @@ func (m *lineMarch) try(tau, d float64) float64 {
 	if !m.solve(m.h2, m.b, a, tau+d) {
 		return math.Inf(1)
 	}
-	_ = q1
+	m.q2 = m.qs[0] + m.qs[1]
+	m.tryJ += a * m.q2
 	c := 2 * trErrorK * d
 	for i := range m.delta {
 		m.f2[i] = (m.w[i]*m.h2[i] - m.b[i]) / a
@@ -316,14 +361,22 @@ func (m *lineMarch) try(tau, d float64) float64 {
 	m.back(m.delta)
 	worst := 0.0
 	for i, e := range m.delta {
-		worst = max(worst, math.Abs(e*m.dt[i]))
+		l := m.laws[m.food[i]]
+		if e = math.Abs(e) * max(l.thin(m.h2[i]), heatCounts*l.thin(0)); e > worst {
+			worst = e
+		}
 	}
 	return worst
 }
 
+// heatCounts is how much an error of the heat content counts, by what it would be worth in unfrozen food, where freezing food hides it: it
+// would come out as a wrong time when the food has frozen or thawed.
+const heatCounts = 0.5
+
 // accept makes the last try the state.
 func (m *lineMarch) accept(k *track, t float64) {
 	m.h, m.h2 = m.h2, m.h
+	m.q0, m.inJ = m.q2, m.inJ+m.tryJ
 	for i := range m.rate {
 		m.rate[i] = m.f2[i] / m.w[i]
 	}
@@ -338,12 +391,9 @@ func (m *lineMarch) accept(k *track, t float64) {
 
 // keep writes the state into a track.
 func (m *lineMarch) keep(k *track, t float64) {
-	c, slope := k.add(t)
-	m.look(m.h)
-	copy(c, m.temp)
-	for i := range slope {
-		slope[i] = m.rate[i] * m.dt[i]
-	}
+	h, slope := k.add(t)
+	copy(h, m.h)
+	copy(slope, m.rate)
 }
 
 // fill starts at one temperature.
@@ -371,9 +421,9 @@ func (m *lineMarch) firstS() float64 {
 }
 
 func (m *lineMarch) span() (low, high float64) {
-	m.look(m.h)
-	low, high = m.temp[0], m.temp[0]
-	for _, c := range m.temp {
+	low, high = math.Inf(1), math.Inf(-1)
+	for i, h := range m.h {
+		c := m.laws[m.food[i]].temperature(h)
 		low, high = min(low, c), max(high, c)
 	}
 	return low, high
@@ -396,4 +446,12 @@ func (m *lineMarch) touches(k *skin) (nodes []int) {
 		}
 	}
 	return nodes
+}
+
+func (m *lineMarch) keepsHeat() []*law {
+	out := make([]*law, len(m.food))
+	for i, f := range m.food {
+		out[i] = m.laws[f]
+	}
+	return out
 }

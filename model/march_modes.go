@@ -428,3 +428,5 @@ func (m *modesMarch) restore() {
 	copy(m.before, m.kept[2*m.n:])
 	m.lastS = m.keptS
 }
+
+func (m *modesMarch) keepsHeat() []*law { return nil }

@@ -302,12 +302,9 @@ func (m *spaceMarch) accept(k *track, t float64) {
 }
 
 func (m *spaceMarch) keep(k *track, t float64) {
-	c, slope := k.add(t)
-	for i, h := range m.h {
-		var dt float64
-		c[i], _, dt, _ = m.law.at(h)
-		slope[i] = m.f0[i] * dt
-	}
+	h, slope := k.add(t)
+	copy(h, m.h)
+	copy(slope, m.f0)
 }
 
 // firstS is what a few stages reach.
@@ -579,4 +576,12 @@ func (m *spaceMarch) touches(k *skin) (nodes []int) {
 		}
 	}
 	return nodes
+}
+
+func (m *spaceMarch) keepsHeat() []*law {
+	out := make([]*law, m.n)
+	for i := range out {
+		out[i] = m.law
+	}
+	return out
 }

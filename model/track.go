@@ -5,19 +5,27 @@ import (
 	"sort"
 )
 
-// track keeps the temperatures of n nodes at rising instants, with their slopes in time: cubics through both stand between. A change of
-// surroundings stands twice, with the slopes before and after it.
+// track keeps n nodes at rising instants, with their slopes in time: cubics through both stand between. A change of surroundings stands
+// twice, with the slopes before and after it. Where a front of ice moves, heat contents are kept, which change evenly when it passes
+// a node, and not temperatures, which do not.
 type track struct {
 	n     int
 	times []float64
-	data  []float64 // by instant: n temperatures, °C, then n slopes, K/s
+	data  []float64 // by instant: n temperatures, °C, or heat contents, J/m³, then n slopes of them
+	laws  []*law    // by node, of heat contents; nil: temperatures are kept
 	last  int       // the interval that was looked at last
 }
 
-// add appends an instant and gives the slices to fill.
+// usualInstants is how many instants a march mostly takes.
+const usualInstants = 250
+
+// add appends an instant and gives the slices to fill with what is kept and its slopes.
 func (k *track) add(t float64) (c, slope []float64) {
 	k.times = append(k.times, t)
 	at := len(k.data)
+	if at == 0 {
+		k.data = make([]float64, 0, usualInstants*2*k.n)
+	}
 	k.data = append(k.data, make([]float64, 2*k.n)...)
 	return k.data[at : at+k.n], k.data[at+k.n : at+2*k.n]
 }
@@ -57,12 +65,6 @@ func (k *track) find(t float64) between {
 	return between{i, 1 + y*(2*x-3), d * x * (1 + x*(x-2)), y * (3 - 2*x), d * y * (x - 1)}
 }
 
-// node gives the temperature of a node.
-func (k *track) node(b between, j int) float64 {
-	a := k.data[2*k.n*b.i:]
-	return b.c0*a[j] + b.s0*a[k.n+j] + b.c1*a[2*k.n+j] + b.s1*a[3*k.n+j]
-}
-
 // all fills out with the temperatures of all nodes.
 func (k *track) all(b between, out []float64) {
 	a := k.data[2*k.n*b.i : 2*k.n*(b.i+2)]
@@ -71,6 +73,18 @@ func (k *track) all(b between, out []float64) {
 	for j := range out[:n] {
 		out[j] = b.c0*c0[j] + b.s0*s0[j] + b.c1*c1[j] + b.s1*s1[j]
 	}
+	for j, l := range k.laws {
+		out[j] = l.temperature(out[j])
+	}
+}
+
+// kept gives the temperature of a node at instant i, °C.
+func (k *track) kept(i, j int) float64 {
+	c := k.data[2*k.n*i+j]
+	if k.laws != nil {
+		return k.laws[j].temperature(c)
+	}
+	return c
 }
 
 // reach gives the coldest and hottest temperature that was kept between two instants.
@@ -78,9 +92,9 @@ func (k *track) reach(from, to float64) (low, high float64) {
 	low, high = math.Inf(1), math.Inf(-1)
 	for i, t := range k.times {
 		if t >= from && t <= to {
-			c, _ := k.row(i)
-			for _, x := range c {
-				low, high = min(low, x), max(high, x)
+			for j := range k.n {
+				c := k.kept(i, j)
+				low, high = min(low, c), max(high, c)
 			}
 		}
 	}

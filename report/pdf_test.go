@@ -28,6 +28,35 @@ func roastHead() *Head {
 	}
 }
 
+// crust is an invented food of a layer.
+var crust = &model.Material{Name: "crust", Source: "an invented source", Props: func(float64) model.Properties { return model.Properties{KWmK: 0.21, RhoKgM3: 640, CJkgK: 2300} }}
+
+// icy is an invented food that freezes: ice by Raoult's law, 0.65·(1 − Tf/T) of its mass from Tf = −1.2 °C on (Schwartzberg 1976).
+func icy() *model.Material {
+	const tf, water, latent, c0 = -1.2, 0.65, 333e3, 3500.
+	ice := func(t float64) float64 { return water * max(0, 1-tf/min(t, tf)) }
+	return &model.Material{Name: "mince", Source: "an invented source", Composed: true, LowC: -40, HighC: 150, FreezingC: ptr(tf), IceShare: ice,
+		EnthalpyJkg: func(t float64) float64 { return c0*(t-tf) - latent*ice(t) },
+		Props: func(t float64) model.Properties {
+			q := model.Properties{KWmK: 0.45 + 0.8*ice(t), RhoKgM3: 1040, CJkgK: c0}
+			if t < tf {
+				q.CJkgK -= latent * water * tf / (t * t)
+			}
+			return q
+		}}
+}
+
+// again solves a product anew after it was changed.
+func again(t testing.TB, p *Product) {
+	t.Helper()
+	p.Further = nil
+	var err error
+	if p.History, err = model.Solve(p.Product, p.Steps, model.Options{}); err != nil {
+		t.Fatal(err)
+	}
+	p.Samples = p.History.Sample(300)
+}
+
 // roast is an invented product, solved, with invented findings around the true temperatures.
 func roast(t testing.TB, shape *model.Shape, v rules.Verdict) *Product {
 	t.Helper()
@@ -154,6 +183,28 @@ func TestProductPDF(t *testing.T) {
 		{"cylinder", model.Cylinder, rules.NotMet, nil, []string{"diameter 90 mm"}},
 		{"bar", model.Bar, rules.NotMet, nil, []string{"thickness 55 mm, width 120 mm"}},
 		{"stirred", model.Stirred, rules.Met, nil, []string{"volume 20 L", "the same temperature"}},
+		{"spheroid", model.Spheroid, rules.Met, nil, []string{"Calculated as a spheroid: thickness 55 mm, diameter 90 mm", "from the side to the centre", "end of the axis", "method: marched"}},
+		{"layered slab", model.Slab, rules.Met, func(h *Head, p *Product) {
+			p.Product.Layers = []model.Layer{{Food: crust, ThicknessM: 0.006, BelowM2KW: 0.003}, {Food: p.Product.Food, ThicknessM: 0.043}, {Food: crust, ThicknessM: 0.006}}
+			p.Product.Shape, p.Product.Food = model.LayeredSlab, nil
+			again(t, p)
+		}, []string{"thickness 55 mm, in 3 layers from the top: 1 crust 6 mm (contact below: 0.003 m²·K/W), 2 pork loin 43 mm, 3 crust 6 mm", "the temperature jumps", "1 crust",
+			"touch perfectly", "Properties of the food"}},
+		{"frozen start", model.Slab, rules.Met, func(h *Head, p *Product) {
+			p.Product.Food, p.Product.StartC = icy(), -18
+			again(t, p)
+		}, []string{"−20.0 °C (−4.0 °F)", "Ice", "61 %", "supercooling is left out", "specific heat holds the heat of the ice"}},
+		{"thick food", model.ShortCylinder, rules.NotMet, func(h *Head, p *Product) {
+			q, steps := model.Mixed(p.Product, p.Steps, p.History)
+			mixed, err := model.Solve(q, steps, model.Options{})
+			if err != nil {
+				t.Fatal(err)
+			}
+			p.Further = []rules.Run{{Name: rules.WellMixed, History: mixed}}
+			for i := range p.Judgement.Findings {
+				p.Judgement.Findings[i].Run = rules.WellMixed
+			}
+		}, []string{"(run as well mixed)", "The food may mix by itself while it is hot", "the run as conducting", "the food as well mixed (anywhere: it is stirred)"}},
 		{"accents, emoji and Chinese", model.Slab, rules.Met, func(h *Head, p *Product) {
 			p.Product.Name = "Crème brûlée Żurek Щи Σούπα 🍗 红烧肉\u0007"
 		}, []string{"Crème brûlée Żurek Щи Σούπα", "U+1F357", "U+70E7", "U+7EA2", "U+8089"}},

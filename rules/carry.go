@@ -56,8 +56,8 @@ func (v *view) carryOver(f *Finding) {
 	}
 }
 
-// dry tells whether the first step of a stretch is calculated as dry though the food is moist and lies open: in air whose film the
-// program takes, where nobody said dry or wet.
+// dry tells whether the first step of a stretch is calculated as dry though the food is moist and lies open: in air, where nobody
+// said dry or wet; a film typed there stands for convection alone.
 func (v *view) dry(iv interval) bool {
 	if v.h.Recorded || v.h.Product == nil {
 		return false
@@ -67,7 +67,7 @@ func (v *view) dry(iv interval) bool {
 		moist = moist || !f.Waterless
 	}
 	e := v.first(iv)
-	return moist && e != nil && (e.Surface == model.StillAir || e.Surface == model.MovingAir) && e.FilmW == nil && e.Wet == nil && (e.Cover == nil || e.Cover == model.Open)
+	return moist && e != nil && (e.Surface == model.StillAir || e.Surface == model.MovingAir) && e.Wet == nil && (e.Cover == nil || e.Cover == model.Open)
 }
 
 // carriedOver enters the sentence on a limit that is met only by what the food gets after its heating.

@@ -20,6 +20,7 @@ func TestCarryOverOfMoistFood(t *testing.T) {
 	}{
 		{"open in still air, nothing said", model.Exposure{Surface: model.StillAir}, false, NotMet, "It would be met only through the rise after the cook"},
 		{"open in moving air, nothing said", model.Exposure{Surface: model.MovingAir, AirMS: &film}, false, NotMet, "not counted"},
+		{"a typed film of air stands for convection alone", model.Exposure{Surface: model.StillAir, FilmW: &film}, false, NotMet, "not counted"},
 		{"open by the column Cover", model.Exposure{Surface: model.StillAir, Cover: model.Open}, false, NotMet, "not counted"},
 		{"wet, with its evaporation", model.Exposure{Surface: model.StillAir, Wet: &wet}, false, Met, "Met only through the rise after the cook"},
 		{"said to be dry", model.Exposure{Surface: model.StillAir, Wet: &dry}, false, Met, "a moist surface loses heat"},

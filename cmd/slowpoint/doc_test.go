@@ -226,7 +226,7 @@ func shapeTable() string {
 		}
 		rows = append(rows, []string{"`" + s.Name + "`", strings.Join(s.Needs, ", "), strings.Join(faces, ", "), help})
 	}
-	return table("Shape|Sizes it needs|Faces that may differ|For", rows)
+	return table("Shape|Sizes it needs|Faces that may differ|For", rows) + "\n" + model.IrregularPieces + "\n"
 }
 
 func surroundingsTable() string {

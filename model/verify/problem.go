@@ -91,20 +91,25 @@ func (p Problem) passes(place model.Place, c float64) func() (float64, error) {
 		if err != nil {
 			return 0, err
 		}
-		lo, hi := 0.0, h.EndS()
-		start, end := h.At(place, lo) > c, h.At(place, hi) > c
-		if start == end {
-			return 0, fmt.Errorf("%s: %g °C is not passed", p.Name, c)
-		}
-		for hi-lo > 1e-3 {
-			if mid := (lo + hi) / 2; h.At(place, mid) > c == start {
-				lo = mid
-			} else {
-				hi = mid
-			}
-		}
-		return hi, nil
+		return passing(h, place, c)
 	}
+}
+
+// passing finds when a place of a history passes a temperature for good.
+func passing(h *model.History, place model.Place, c float64) (float64, error) {
+	lo, hi := 0.0, h.EndS()
+	start, end := h.At(place, lo) > c, h.At(place, hi) > c
+	if start == end {
+		return 0, fmt.Errorf("%g °C is not passed", c)
+	}
+	for hi-lo > 1e-3 {
+		if mid := (lo + hi) / 2; h.At(place, mid) > c == start {
+			lo = mid
+		} else {
+			hi = mid
+		}
+	}
+	return hi, nil
 }
 
 // in turns an answer in s into one in longer units.
@@ -112,5 +117,26 @@ func in(seconds float64, got func() (float64, error)) func() (float64, error) {
 	return func() (float64, error) {
 		t, err := got()
 		return t / seconds, err
+	}
+}
+
+// depth asks how far below the upper face of a slab a temperature, °C, lies at the end, m; it falls from there to the middle or rises.
+func (p Problem) depth(c float64) func() (float64, error) {
+	return func() (float64, error) {
+		h, err := p.history()
+		if err != nil {
+			return 0, err
+		}
+		half, end := p.Product.Size.ThicknessM/2, h.EndS()
+		lo, hi := 0.0, half
+		above := h.At(model.Place{UpM: half}, end) > c
+		for hi-lo > 1e-7 {
+			if mid := (lo + hi) / 2; h.At(model.Place{UpM: half - mid}, end) > c == above {
+				lo = mid
+			} else {
+				hi = mid
+			}
+		}
+		return hi, nil
 	}
 }

@@ -1,6 +1,8 @@
 package verify
 
 import (
+	"math"
+
 	"slowpoint/model"
 	"slowpoint/model/food"
 )
@@ -23,7 +25,20 @@ func textbookCases() []Case {
 	egg := oneFood(model.Sphere, 0.025, diffusing(0.627, 0.151e-6), 5, step("hot water", 3600, exposure(1200, 95)))
 	apple := oneFood(model.Sphere, 0.045, diffusing(0.418, 1.3e-7), 20, step("freezer", 3600, exposure(8, -15)))
 	roast := oneFood(model.Sphere, 0.0710, model.Properties{KWmK: 0.5, RhoKgM3: 1000, CJkgK: 4000}, 20, step("oven", 4*3600, exposure(18, 163)))
+	chicken := oneFood(model.Sphere, 0.0753146, diffusing(0.45, 0.13e-6), 15, step("brine", 2.75*3600, exposure(440, -7)))
+	soil := oneFood(model.Slab, 3, diffusing(0.4, 0.15e-6), 15, step("winter", 90*24*3600, exposure(held, -10)))
+	soil.Product.Size.ThicknessM = 2 * 9.5 * math.Sqrt(0.15e-6*90*24*3600)
+	flow := func(k, alpha float64) Problem { // 1250 W/m² whatever the surface: a film of next to nothing to a medium of more than a million degrees
+		return oneFood(model.Slab, 9.5*math.Sqrt(alpha*1200), diffusing(k, alpha), 20, step("heat", 1200, exposure(1e-3, 1.25e6+20)))
+	}
+	metal, block := flow(237, 9.71e-5), flow(1.26, 1.1e-5)
+	surface := func(p Problem) model.Place { return model.Place{UpM: p.Product.Size.ThicknessM / 2} }
 	return []Case{
+		{"chicken of 1.7 kg as a sphere, 2.75 h in stirred brine of -7 °C (no freezing in the problem): centre", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, 5th ed., problem 4-75; exact series, -2.0327 °C", "°C", -2.0327, 0.005, chicken.at(model.Place{}, 2.75*3600), chicken},
+		{"chicken of 1.7 kg as a sphere, 2.75 h in stirred brine of -7 °C: surface", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, 5th ed., problem 4-75; exact series, -6.9315 °C", "°C", -6.9315, 0.005, chicken.at(model.Place{UpM: 0.0753146}, 2.75*3600), chicken},
+		{"soil after 90 days below a surface of -10 °C: depth of 0 °C", Textbook, "Cengel, Heat Transfer, Example 4-6: 0.78 m read from its chart; exact 0.800943 m", "m", 0.800943, 0.001, soil.depth(0), soil},
+		{"metal of k 237 under 1250 W/m² for 20 min: surface", Textbook, "Cengel, Heat Transfer, Example 4-7 (a); closed form, 22.0315 °C", "°C", 22.0315, 0.005, metal.at(surface(metal), 1200), metal},
+		{"block of k 1.26 under 1250 W/m² for 20 min: surface", Textbook, "Cengel, Heat Transfer, Example 4-7 (b); closed form, 148.612 °C", "°C", 148.612, 0.03, block.at(surface(block), 1200), block},
 		{"steak of 20 mm chilled until its surface is at 2 °C", Textbook, "Cengel, Heat Transfer, problem 11-44 with the publisher's solution: 93.1 min", "min", 93.1, 0.1, in(60, steak.passes(model.Place{UpM: 0.01}, 2)), steak},
 		{"beef carcass as a cylinder of 240 mm: centre down to 4 °C (no freezing in the problem)", Textbook, "Cengel & Ghajar, Heat and Mass Transfer, 6th ed., problem 4-65: 12.2 h", "h", 12.2, 0.1, in(3600, carcass.passes(model.Place{}, 4)), carcass},
 		{"egg as a sphere of 50 mm: centre up to 70 °C", Textbook, "Cengel, Heat Transfer, Example 4-3: 14.4 min with the coefficients of its table", "min", 14.4, 0.1, in(60, egg.passes(model.Place{}, 70)), egg},

@@ -18,7 +18,7 @@ type ReferenceProblem struct {
 	EdgeK   float64 // accuracy at a lower edge between unlike faces and for the coldest and hottest place, K
 }
 
-// References lists the reference problems: constant properties, one, two and three directions, spheroids and layers.
+// References lists the reference problems: one, two and three directions, spheroids and layers, changing properties and freezing.
 func References() []ReferenceProblem {
 	p := model.Properties{KWmK: 0.48, RhoKgM3: 1060, CJkgK: 3600}
 	slab := func(thicknessM, startC float64) model.Product {
@@ -54,6 +54,10 @@ func References() []ReferenceProblem {
 		{ID: "C", AllowK: 0.01, EdgeK: 0.01, Points: map[string]model.Place{"centre": {}, "side_mid": {AcrossM: 0.05}, "end_centre": {UpM: 0.06}, "edge": {UpM: 0.06, AcrossM: 0.05},
 			"half_half": {UpM: 0.03, AcrossM: 0.025}},
 			Problem: Problem{"short cylinder 100 × 120 mm", model.Product{Name: "cylinder", Shape: model.ShortCylinder, Size: model.Size{DiameterM: 0.1, LengthM: 0.12}, Food: material(p), StartC: 5}, chain}},
+		{ID: "D", AllowK: 0.02, EdgeK: 0.03, Points: map[string]model.Place{"centre": {}, "face_x": {AlongM: 0.15}, "face_y": {AcrossM: 0.09}, "face_z": {UpM: 0.045},
+			"corner": {UpM: 0.045, AcrossM: 0.09, AlongM: 0.15}, "half": {UpM: 0.0225, AcrossM: 0.045, AlongM: 0.075}},
+			Problem: Problem{"brick 300 × 180 × 90 mm of changing properties, cook, rest, chill", model.Product{Name: "brick", Shape: model.Brick,
+				Size: model.Size{LengthM: 0.3, WidthM: 0.18, ThicknessM: 0.09}, Food: changing(), StartC: 5}, chain}},
 		{ID: "E", AllowK: 0.005, EdgeK: 0.005, Points: up("centre", 0, up("half_radius", 0.011, up("surface", 0.022, nil))),
 			Problem: Problem{"sphere 44 mm, boiling water, ice water", model.Product{Name: "sphere", Shape: model.Sphere, Size: model.Size{DiameterM: 0.044},
 				Food: material(model.Properties{KWmK: 0.5, RhoKgM3: 1040, CJkgK: 3700}), StartC: 20},
@@ -64,6 +68,9 @@ func References() []ReferenceProblem {
 			Problem: Problem{"flat spheroid 60 × 100 mm, cook, rest, chill", spheroid(0.03, 0.05, 5, p), chain}},
 		{ID: "G", AllowK: 0.02, EdgeK: 0.02, Points: up("centre", 0, up("filling_at_joint", 0.02, up("pastry_at_joint", 0.020000001, up("pastry_mid", 0.023, up("surface", 0.026, nil))))),
 			Problem: Problem{"filling of 40 mm in pastry of 6 mm, cook, rest, chill", layered(5, crust(0.006, 0.002, model.Properties{KWmK: 0.25, RhoKgM3: 600, CJkgK: 2200}, 0.04, model.Properties{KWmK: 0.5, RhoKgM3: 1050, CJkgK: 3600})...), chain}},
+		{ID: "H", AllowK: 0.02, EdgeK: 0.02, Points: up("centre", 0, up("quarter", 0.0125, up("surface", 0.025, nil))),
+			Problem: Problem{"slab 50 mm that freezes", model.Product{Name: "slab", Shape: model.Slab, Size: model.Size{ThicknessM: 0.05}, Food: iceOf(ice{1050, 3500, 1900, 0.68 * 333500, -1.1, 0.48, 1.55}), StartC: 20},
+				[]model.Step{frozenAt(10800, exposure(40, -30))}}},
 		{ID: "J", AllowK: 0.005, EdgeK: 0.005, Points: up("centre", 0, up("quarter", 0.015, up("surface", 0.03, nil))),
 			Problem: Problem{"slab 60 mm, chiller that settles", slab(0.06, 70), []model.Step{settling()}}},
 		{ID: "K", AllowK: 0.02, EdgeK: 0.03, FromLow: true, Points: trayPoints(),
@@ -72,6 +79,13 @@ func References() []ReferenceProblem {
 				traySteps("rest", 900, [3]model.Exposure{exposure(8, 22), exposure(6, 22), exposure(15, 22)}),
 				traySteps("chill", 14400, [3]model.Exposure{exposure(35, 2), exposure(20, 2), exposure(40, 2)})}}},
 	}
+}
+
+// changing is a food of which conductivity and specific heat rise with the temperature in straight lines.
+func changing() *model.Material {
+	return &model.Material{Name: "test input", Source: "input of the case", Table: true, Waterless: true, LowC: -50, HighC: 200, Props: func(c float64) model.Properties {
+		return model.Properties{KWmK: 0.46 + 0.0014*c, RhoKgM3: 1000, CJkgK: 3700 + 1.5*c}
+	}}
 }
 
 // spheroid is a spheroid with half axes a along its axis and b across, m.
@@ -153,6 +167,9 @@ func referenceCases() []Case {
 		point("C", "edge", 600, 98.66216),
 		point("C", "centre", 6300, 72.79845),
 		sampled("C", "hottest place", 5100, 84.63564, hottest),
+		point("D", "corner", 600, 114.66806),
+		point("D", "centre", 6300, 45.38995),
+		sampled("D", "mean", 4500, 69.03867, mean),
 		point("E", "surface", 60, 94.62478),
 		point("E", "centre", 1080, 87.71003),
 		point("F1", "pole", 600, 74.47924),
@@ -164,6 +181,9 @@ func referenceCases() []Case {
 		point("G", "pastry_at_joint", 600, 40.50406),
 		point("G", "centre", 3600, 63.44954),
 		sampled("G", "mean", 6300, 48.24528, mean),
+		point("H", "surface", 600, -2.0067),
+		point("H", "centre", 7200, -1.32747),
+		sampled("H", "mean", 3600, -2.00172, mean),
 		sampled("J", "mean", 7200, 32.41275, mean),
 		sampled("K", "coldest place", 600, 5.02081, coldest),
 		sampled("K", "hottest place", 6300, 73.13478, hottest),

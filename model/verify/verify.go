@@ -26,7 +26,10 @@ const (
 	LongTime   = "long and short times"
 	Spheroids  = "spheroids"
 	Layers     = "layers"
+	Following  = "changing properties"
+	Freezing   = "freezing and thawing"
 	Reference  = "reference problem"
+	Benchmarks = "benchmark of other programs"
 	Textbook   = "textbook problem"
 	Properties = "properties"
 	Practice   = "common practice"
@@ -43,7 +46,10 @@ var Areas = []struct{ Name, Help string }{
 	{LongTime, "the limits of long and short times"},
 	{Spheroids, "against numerically exact solutions on the mapped ball"},
 	{Layers, "a filling in its crust with an air gap against its exact series, and steady heat through three layers by hand"},
+	{Following, "a food whose properties follow its temperature, against the exact Kirchhoff integral"},
+	{Freezing, "ice that forms over a range, in slab, cylinder and sphere, against independent finite volumes"},
 	{Reference, "whole chains in one, two and three directions, against independent solutions by two methods"},
+	{Benchmarks, "heat in metal, that programs for engineers are held to: radiation, an end that warms and cools, two directions"},
 	{Textbook, "problems with a printed answer; the allowance is that of the print"},
 	{Properties, "properties from composition, against arithmetic on the published polynomials"},
 	{Practice, "what every kitchen knows, with a wide allowance"},
@@ -70,7 +76,7 @@ func Run(c Case) Result {
 // Cases lists every case, area by area.
 func Cases() []Case {
 	var all []Case
-	for _, list := range [][]Case{seriesCases(), productCases(), halfSpaceCases(), rampCases(), chainCases(), limitCases(), spheroidCases(), layerCases(), referenceCases(), textbookCases(),
+	for _, list := range [][]Case{seriesCases(), productCases(), halfSpaceCases(), rampCases(), chainCases(), limitCases(), spheroidCases(), layerCases(), followingCases(), freezingCases(), referenceCases(), benchmarkCases(), textbookCases(),
 		propertyCases(), practiceCases(), measuredCases()} {
 		all = append(all, list...)
 	}

@@ -377,6 +377,8 @@ func (r *ReferenceProblem) place(m []any) model.Place {
 	switch {
 	case r.ID == "C" || r.Product.Shape == model.Spheroid: // r, z from mid-height
 		return model.Place{UpM: x(1), AcrossM: x(0)}
+	case r.ID == "D": // x, y, z from the centre
+		return model.Place{UpM: x(2), AcrossM: x(1), AlongM: x(0)}
 	case r.ID == "K": // x, y from centre; z from below
 		return model.Place{UpM: x(2) - r.Product.Size.ThicknessM/2, AcrossM: x(1), AlongM: x(0)}
 	case r.FromLow:

@@ -74,7 +74,7 @@ var OwnSheets = []*workbook.Sheet{
 }
 
 // planSheets may stand in a mapping: their rows go into the plan as they are.
-var planSheets = []string{"Plan", "Foods", "Courses", "Faces", "Steps", "Points", "Limits", "Groups", "Tables"}
+var planSheets = []string{"Plan", "Layers", "Foods", "Courses", "Faces", "Steps", "Points", "Limits", "Groups", "Tables"}
 
 // Sheets are all sheets that a mapping may have.
 var Sheets = append(append([]*workbook.Sheet(nil), OwnSheets...), ofPlan(planSheets)...)

@@ -321,8 +321,13 @@ func meanings(c *Column) []string {
 				add(x.Name, x.Refused)
 				continue
 			}
-			add(x.Name, x.Help+"; needs "+and(x.Needs))
+			needs := and(x.Needs)
+			if needs == "" {
+				needs = "no size of its own"
+			}
+			add(x.Name, x.Help+"; needs "+needs)
 		}
+		out = append(out, model.IrregularPieces)
 	case "Surroundings":
 		for _, x := range model.Surfaces {
 			help := x.Help
