@@ -118,7 +118,7 @@ type (
 		Why             string          `json:"why"`
 		Notes           []string        `json:"notes"`
 		LowConductivity bool            `json:"low_conductivity"`
-		WellMixed       bool            `json:"well_mixed,omitempty"` // of a food that may mix by itself
+		WellMixed       bool            `json:"well_mixed"`
 	}
 	groupJSON struct {
 		Group     string `json:"group"`
