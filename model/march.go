@@ -57,18 +57,26 @@ type effort struct {
 	more  float64 // factor on the number of nodes
 	tolK  float64 // error of a step in time, K
 	rough bool    // the second march, that the error is estimated with
+	fewer float64 // rough: share of the volumes
 	ends  []Span  // rough: the steps as they ran in the first march, so that both change surroundings at the same instants
 }
 
 // rougher is the effort of the second march. A step's error in time is of third order, so that their sum goes with the tolerance to 2/3.
 // Control volumes, with half the nodes, and times that go with them make about four times the error; polynomials, two fewer on each half
 // axis, and times that go with them about six times.
-func (s *solver) rougher(e effort, ran []Span) effort { return effort{e.more, e.tolK * 6, true, ran} }
+func (s *solver) rougher(e effort, ran []Span) effort {
+	if s.front && s.used > 1 {
+		return effort{e.more, e.tolK * 3, true, 0.7, ran}
+	}
+	return effort{e.more, e.tolK * 6, true, 0.5, ran}
+}
 
 // How the difference of the two marches goes over into an error: that of a march with four or six times the error lies three or five
-// errors off, less some for doubt.
+// errors off, less some for doubt; where a front moves in more directions than one the rougher march has seven tenths of the volumes, and
+// twice the error.
 const (
 	volumesWorse     = 3
+	spaceWorse       = 1
 	polynomialsWorse = 3
 )
 
@@ -78,8 +86,25 @@ func (s *solver) polynomial() bool { return s.used > 0 && !s.front && s.product.
 // marchGoalK is the error that a march is to keep, K.
 const marchGoalK = 0.019
 
-// march solves the product by marching, with more effort until the estimate of the error meets its goal, or three times.
+// mostTries is how often a march may be made again with more effort. A front of ice makes every place turn in its own instant, which more
+// nodes and shorter steps move a little; in two and three directions they cost more than they are worth. What is left is stated.
+func (s *solver) mostTries() int {
+	switch {
+	case !s.front:
+		return 3
+	case s.used > 1:
+		return 0
+	}
+	return 1
+}
+
+// march solves the product by marching, with more effort until the estimate of the error meets its goal or no more tries are left.
 func (s *solver) march() (*History, error) {
+	if s.front && s.product.Shape == Spheroid {
+		s.refused.Add(cell.Error{At: s.product.At, Field: "Shape", Typed: Spheroid.Name, Msg: "the food could freeze or melt here, and a front of ice in a spheroid cannot be calculated",
+			Hint: "take a long cylinder of the spheroid's diameter, which is slower, or judge a probe record"})
+		return nil, s.refused
+	}
 	e := effort{more: 1, tolK: 6e-3}
 	worse := float64(volumesWorse)
 	if s.polynomial() {
@@ -87,6 +112,8 @@ func (s *solver) march() (*History, error) {
 		if s.used == 3 {
 			e.more = 1.1
 		}
+	} else if s.used > 1 {
+		e.tolK, worse = 1.5e-2, spaceWorse
 	}
 	for tries := 0; ; tries++ {
 		h, fine := s.marchOnce(e)
@@ -97,7 +124,7 @@ func (s *solver) march() (*History, error) {
 		_, rough := s.marchOnce(s.rougher(e, h.Spans))
 		s.chain, s.main = chain, fine
 		h.ErrorK = max(1e-5, fine.differs(h, rough)/worse)
-		if h.ErrorK <= marchGoalK || tries == 3 {
+		if h.ErrorK <= marchGoalK || tries == s.mostTries() {
 			s.boiling(h)
 			return h, nil
 		}
@@ -344,6 +371,8 @@ type mesh interface {
 	weights() []float64
 	// onto gives a function that fills there with the temperatures at the nodes of another mesh of the same kind, from those at its own.
 	onto(other mesh) func(here, there []float64)
+	// neighbours calls do for the nodes beside a node.
+	neighbours(j int, do func(k int))
 	// fill gives the temperatures at the nodes of the body, which may be more than those of the march.
 	fill(nodes, out []float64)
 	// slice gives the coefficients of the polynomials along an axis through a place, where the mesh has polynomials.
@@ -402,14 +431,16 @@ func (f *marched) method() string {
 	return "conduction by heat content, marched in time; " + f.mesh.String()
 }
 
-// differs gives the largest difference from a rougher march at its nodes, from settle after each change on.
+// differs gives the largest difference from a rougher march at its nodes, from settle after each change on. Where a front of ice moves it
+// leaves out the nodes beside the front: a place there warms by degrees in seconds when the front passes, in both marches, but not in
+// the same second.
 func (f *marched) differs(h *History, rough *marched) float64 {
 	worst := 0.0
 	mine, other, there := make([]float64, f.track.n), make([]float64, rough.track.n), make([]float64, f.track.n)
 	end := rough.track.times[len(rough.track.times)-1]
 	onto := rough.mesh.onto(f.mesh)
 	grow := 1.4
-	if f.track.laws != nil { // a front makes every node turn in its own time
+	if f.track.laws != nil { // every node turns in its own time
 		grow = 1.1
 	}
 	for i := range h.Spans {
@@ -420,7 +451,9 @@ func (f *marched) differs(h *History, rough *marched) float64 {
 			rough.track.all(rough.track.find(min(t, end)), other)
 			onto(other, there)
 			for j, c := range mine {
-				worst = max(worst, math.Abs(c-there[j]))
+				if d := math.Abs(c - there[j]); d > worst && !f.atFront(mine, there, j) {
+					worst = d
+				}
 			}
 			if t == sp.EndS {
 				break
@@ -428,6 +461,21 @@ func (f *marched) differs(h *History, rough *marched) float64 {
 		}
 	}
 	return worst
+}
+
+// atFront tells whether the front of ice stands beside node j in one march or between the two marches.
+func (f *marched) atFront(mine, there []float64, j int) bool {
+	if f.track.laws == nil {
+		return false
+	}
+	zero := f.track.laws[j].zeroC
+	frozen := mine[j] < zero
+	if there[j] < zero != frozen {
+		return true
+	}
+	beside := false
+	f.mesh.neighbours(j, func(k int) { beside = beside || mine[k] < zero != frozen || there[k] < zero != frozen })
+	return beside
 }
 
 // newMarched lays out the march of a product.
@@ -458,7 +506,7 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 	if s.product.Shape == LayeredSlab {
 		kind, kinds[0] = planeFull, planeFull
 	}
-	g := newLineGrid(s.product, kind, r, e.volumes(lineNodes))
+	g := newLineGrid(s.product, kind, r, e.volumes(lineNodes), lineCrowd)
 	m := newLineMarch(g, laws)
 	m.lower, m.upper = s.faces[0][0], s.faces[0][1]
 	m.fill(s.product.StartC)
@@ -482,7 +530,7 @@ func (s *solver) laySpace(f *marched, l *law, e effort) {
 			axes[a] = &spaceAxis{kind: lumped, n: 1, x: []float64{0}, w: []float64{1}, k: []float64{0}}
 			continue
 		case front:
-			axes[a] = cutAxis(s.kinds[a], s.radii[a], e.volumes(cutNodes), s.faces[a])
+			axes[a] = cutAxis(s.kinds[a], s.radii[a], e.volumes(cutNodes[s.used]), s.faces[a])
 			nd.x[a] = axes[a].x
 			continue
 		}
@@ -542,7 +590,7 @@ func (s *solver) smoothNodes(a int, e effort) int {
 // volumes is how many control volumes an axis gets of n.
 func (e effort) volumes(n int) int {
 	if e.rough {
-		return int(math.Round(float64(n) * e.more / 2))
+		return int(math.Round(float64(n) * e.more * e.fewer))
 	}
 	return int(math.Round(float64(n) * e.more))
 }
@@ -599,11 +647,10 @@ func (s *solver) lawsOf() []*law {
 	return s.laws
 }
 
-// How many volumes a half axis gets at first: of one axis, and of more where a front moves through them.
-const (
-	lineNodes = 84
-	cutNodes  = 14
-)
+// lineNodes is how many volumes a half axis gets at first, cutNodes how many by the number of axes where a front moves through more than one.
+const lineNodes = 84
+
+var cutNodes = [4]int{2: 22, 3: 14}
 
 // skinOf makes the skin of a face; of layers the outermost tells the water at a wet surface.
 func (s *solver) skinOf(e *Exposure, face *Face, st *Step) *skin {

@@ -24,11 +24,12 @@ type link struct {
 // perfectM2KW stands for the contact of layers that touch perfectly, m²·K/W: as much as a layer of food 0.05 µm thick.
 const perfectM2KW = 1e-7
 
-// crowd is how much closer nodes stand at a face than at the centre: e to this power.
-const crowd = 2.4
+// Nodes stand closer at a face than at the centre, by e to this power: of one axis, and of more, which are stepped explicitly and pay for the
+// closest.
+const lineCrowd, cutCrowd = 2.4, 1
 
 // depths gives the depths below a face of n+1 nodes, m, from 0 to r.
-func depths(r float64, n int) []float64 {
+func depths(r float64, n int, crowd float64) []float64 {
 	d := make([]float64, n+1)
 	for j := range d {
 		d[j] = r * math.Expm1(crowd*float64(j)/float64(n)) / math.Expm1(crowd)
@@ -38,7 +39,7 @@ func depths(r float64, n int) []float64 {
 }
 
 // newLineGrid makes a grid of about n volumes on the half thickness or radius.
-func newLineGrid(p *Product, kind axisKind, r float64, n int) *lineGrid {
+func newLineGrid(p *Product, kind axisKind, r float64, n int, crowd float64) *lineGrid {
 	g := &lineGrid{kind: kind, r: r}
 	if kind == lumped {
 		g.x, g.w, g.food, g.parts = []float64{0}, []float64{r}, []int{0}, [][2]int{{0, 0}}
@@ -49,7 +50,7 @@ func newLineGrid(p *Product, kind axisKind, r float64, n int) *lineGrid {
 		layers = p.Layers
 	}
 	if len(layers) == 0 {
-		d := depths(r, n)
+		d := depths(r, n, crowd)
 		if kind == planeFull {
 			for j := range d {
 				g.x = append(g.x, d[j]-r)
@@ -67,7 +68,7 @@ func newLineGrid(p *Product, kind axisKind, r float64, n int) *lineGrid {
 	for i := len(layers) - 1; i >= 0; i-- {
 		l := &layers[i]
 		half := max(4, int(math.Round(float64(n)*math.Sqrt(l.ThicknessM/(2*r)))))
-		d := depths(l.ThicknessM/2, half)
+		d := depths(l.ThicknessM/2, half, crowd)
 		for j := range d {
 			g.x = append(g.x, from+d[j])
 		}

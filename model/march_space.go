@@ -34,7 +34,7 @@ func smoothAxis(kind axisKind, radiusM float64, n int, by stretch, faces [2]*Fac
 
 // cutAxis makes an axis of control volumes, for fields with a freezing front.
 func cutAxis(kind axisKind, radiusM float64, n int, faces [2]*Face) *spaceAxis {
-	g := newLineGrid(&Product{}, kind, radiusM, n)
+	g := newLineGrid(&Product{}, kind, radiusM, n, cutCrowd)
 	m := newLineMesh(g)
 	a := &spaceAxis{kind: kind, n: len(g.x), w: m.share, line: m, band: true, lower: faces[0], upper: faces[1]}
 	a.x, a.k = make([]float64, a.n), make([]float64, a.n*a.n)
@@ -584,4 +584,19 @@ func (m *spaceMarch) keepsHeat() []*law {
 		out[i] = m.law
 	}
 	return out
+}
+
+func (m *spaceMesh) neighbours(j int, do func(k int)) {
+	stride := m.n
+	for a := range m.axes {
+		n := m.axes[a].n
+		stride /= n
+		at := j / stride % n
+		if at > 0 {
+			do(j - stride)
+		}
+		if at+1 < n {
+			do(j + stride)
+		}
+	}
 }

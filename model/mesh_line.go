@@ -113,3 +113,11 @@ func (m *lineMesh) fill(nodes, out []float64) { copy(out, nodes) }
 func (m *lineMesh) slice([]float64, int, coord, [3]int, []float64) {
 	panic("model: control volumes have no polynomials")
 }
+
+func (m *lineMesh) neighbours(j int, do func(k int)) {
+	for _, k := range [2]int{j - 1, j + 1} {
+		if k >= 0 && k < len(m.x) {
+			do(k)
+		}
+	}
+}
