@@ -87,15 +87,16 @@ func (s *solver) polynomial() bool { return s.used > 0 && !s.front && s.product.
 const marchGoalK = 0.019
 
 // mostTries is how often a march may be made again with more effort. A front of ice makes every place turn in its own instant, which more
-// nodes and shorter steps move a little; in two and three directions they cost more than they are worth. What is left is stated.
+// nodes and shorter steps move a little, and so does a surface that comes to boil; in two and three directions they cost more than they
+// are worth. What is left is stated.
 func (s *solver) mostTries() int {
 	switch {
-	case !s.front:
-		return 3
-	case s.used > 1:
+	case s.front && s.used > 1:
 		return 0
+	case s.front || s.used > 1 && s.wets():
+		return 1
 	}
-	return 1
+	return 2
 }
 
 // march solves the product by marching, with more effort until the estimate of the error meets its goal or no more tries are left.
@@ -115,6 +116,9 @@ func (s *solver) march() (*History, error) {
 	} else if s.used > 1 {
 		e.tolK, worse = 1.5e-2, spaceWorse
 	}
+	if !s.front && s.used > 1 && s.wets() {
+		e.tolK = 1e-2
+	}
 	for tries := 0; ; tries++ {
 		h, fine := s.marchOnce(e)
 		if len(s.refused) > 0 {
@@ -122,6 +126,9 @@ func (s *solver) march() (*History, error) {
 		}
 		chain := s.chain
 		_, rough := s.marchOnce(s.rougher(e, h.Spans))
+		if len(s.refused) > 0 {
+			return nil, s.refused
+		}
 		s.chain, s.main = chain, fine
 		h.ErrorK = max(1e-5, fine.differs(h, rough)/worse)
 		if h.ErrorK <= marchGoalK || tries == s.mostTries() {
@@ -154,6 +161,9 @@ func (s *solver) marchOnce(e effort) (*History, *marched) {
 			return nil, nil
 		}
 		cs := s.marchStep(f, &span, e)
+		if len(s.refused) > 0 {
+			return nil, nil
+		}
 		s.chain = append(s.chain, cs)
 		t += cs.durS
 		span.EndS = t
@@ -203,6 +213,9 @@ func (s *solver) outside(h *History) {
 		}
 	}
 }
+
+// mostKept is how many numbers a track may keep: 300 MB.
+const mostKept = 4e7
 
 // marchStep runs one step into the track.
 func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
@@ -273,6 +286,11 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 			tau = end
 		}
 		f.state.accept(f.track, span.StartS+tau)
+		if len(f.track.data) > mostKept {
+			s.refused.Add(cell.Error{At: st.At, Field: "Step", Typed: st.Name, Msg: "changes so fast at the surface that it takes more steps than can be kept",
+				Hint: "look at the temperatures and the sizes of the product, or use film with a coefficient that stands for everything"})
+			return cs
+		}
 		if grow := max(0.2, min(2.5, 0.9*math.Cbrt(tolK/err))); grow >= 1 {
 			d = max(d, use*grow)
 		} else {
@@ -540,7 +558,7 @@ func (s *solver) laySpace(f *marched, l *law, e effort) {
 	}
 	march := newSpaceMarch(axes, l, s.product.StartC)
 	f.state, f.mesh = march, newSpaceMesh(axes)
-	if !front {
+	if !front && (s.used == 1 || !s.wets()) {
 		f.state = newModesMarch(march, e.tolK/4)
 	}
 	f.body = newBody(body{kinds: s.kinds, radii: s.radii, by: by, pieces: front}, nd)
@@ -569,6 +587,19 @@ func (s *solver) crowded(a int) float64 {
 		thin = min(thin, s.radii[i])
 	}
 	return max(0.1, min(1, crowding*thin/s.radii[a]))
+}
+
+// wets tells whether moisture counts on any surface: near boiling its flow is so steep, and so much steeper at an edge than beside it, that no
+// linear problem is close to it all over a face.
+func (s *solver) wets() bool {
+	for i := range s.steps {
+		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
+			if e.wet() || e.steamWithAir() {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // stretchOf is the stretch of an axis.

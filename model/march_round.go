@@ -19,8 +19,12 @@ type roundMesh struct {
 func newRoundMesh(ball *spheroidMap, nr, nm int) *roundMesh {
 	a, b := ball.a, ball.b
 	rho, mu := collocationOf(spherical, nr, 0), collocationOf(planeHalf, nm, 0)
+	most := 0.0
+	for _, c := range mu.x {
+		most = max(most, ball.surfaceShare(c)/rho.w[nr-1])
+	}
 	axes := [3]*spaceAxis{
-		{kind: spherical, n: nr, x: rho.x, w: rho.w, poly: rho, face: [2]float64{0, 1}},
+		{kind: spherical, n: nr, x: rho.x, w: rho.w, poly: rho, face: [2]float64{0, most}},
 		{kind: planeHalf, n: nm, x: mu.x, w: mu.w, poly: mu},
 		{kind: lumped, n: 1, x: []float64{0}, w: []float64{1}, k: []float64{0}},
 	}

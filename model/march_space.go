@@ -75,12 +75,12 @@ type spaceMarch struct {
 	skins [3][2]*skin
 	spots [3][2][]int // the nodes of each face
 
-	h, f0        []float64 // heat contents, J/m³, and their rates, J/(m³·s)
-	y1, y2, f, u []float64
-	slope        []float64 // by node: slope of the temperature by the heat content
-	kept         []float64
-	rate         float64 // fastest rate of decay in this step of the chain, 1/s
-	known        bool    // f holds the rates of y1, the state that accept takes
+	h, f0          []float64 // heat contents, J/m³, and their rates, J/(m³·s)
+	y1, y2, f, u   []float64
+	slope          []float64 // by node: slope of the temperature by the heat content
+	kept           []float64
+	conducts, thin float64       // in this step of the chain: fastest rate of decay by conduction, 1/s; largest slope of temperature by heat
+	steep          [3][2]float64 // by face: largest slope of the flow by temperature at the last rates, W/(m²·K)
 }
 
 func newSpaceMarch(axes [3]*spaceAxis, l *law, startC float64) *spaceMarch {
@@ -122,15 +122,21 @@ func (m *spaceMarch) surround(skins func(*Face) *skin) {
 			}
 		}
 	}
-	spread, thin := m.law.fastest(low, high)
-	m.rate = m.conductsFast() * spread
+	var spread float64
+	spread, m.thin = m.law.fastest(low, high)
+	m.conducts = m.conductsFast() * spread
+}
+
+// fastest is a bound on the rates of decay now, 1/s: of conduction, and of the faces as steep as the last rates found them, with half as
+// much again for what they may become in a step.
+func (m *spaceMarch) fastest() float64 {
+	rate := m.conducts
 	for a, ax := range m.axes {
-		for side, s := range m.skins[a] {
-			if s != nil && !s.insulated && !s.held {
-				m.rate += ax.face[side] * s.steepest(low, high) * thin
-			}
+		for side := range m.skins[a] {
+			rate += 1.5 * ax.face[side] * m.steep[a][side] * m.thin
 		}
 	}
+	return rate
 }
 
 // conductsFast is the largest rate of decay of all axes together, 1/m².
@@ -200,8 +206,10 @@ func (m *spaceMarch) rates(h, out []float64, tau float64) {
 				held = true
 				continue
 			}
+			m.steep[a][side] = 0
 			for k, i := range m.spots[a][side] {
-				w, _ := s.flux(m.law.temperature(h[i]), tau)
+				w, d := s.flux(m.law.temperature(h[i]), tau)
+				m.steep[a][side] = max(m.steep[a][side], -d)
 				per := ax.face[side]
 				if m.round != nil {
 					per = m.round.face[k]
@@ -247,7 +255,7 @@ func (m *spaceMarch) begin(tau float64) {
 const mostStages = 99
 
 func (m *spaceMarch) try(tau, d float64) float64 {
-	stages := int(math.Ceil((math.Sqrt(9+8*d*m.rate*1.05) - 1) / 2))
+	stages := int(math.Ceil((math.Sqrt(9+8*d*m.fastest()*1.05) - 1) / 2))
 	stages = max(3, stages|1)
 	if stages > mostStages {
 		return math.Inf(1)
@@ -308,7 +316,7 @@ func (m *spaceMarch) keep(k *track, t float64) {
 }
 
 // firstS is what a few stages reach.
-func (m *spaceMarch) firstS() float64 { return 2 / m.rate }
+func (m *spaceMarch) firstS() float64 { return 2 / m.fastest() }
 
 func (m *spaceMarch) span() (low, high float64) {
 	low, high = math.Inf(1), math.Inf(-1)

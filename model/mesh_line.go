@@ -44,17 +44,16 @@ func (m *lineMesh) partOf(x float64) [2]int {
 	return m.parts[0]
 }
 
-// interval finds the node below a place, m, and the first and last node of its layer.
-func (m *lineMesh) interval(x float64) (i, lo, hi int) {
-	p := m.partOf(x)
-	lo, hi = p[0], p[1]
+// interval finds the node below a place, m, in a layer, and the layer's first and last node.
+func (m *lineMesh) interval(layer [2]int, x float64) (i, lo, hi int) {
+	lo, hi = layer[0], layer[1]
 	i = lo + sort.SearchFloat64s(m.x[lo:hi+1], x) - 1
 	return max(lo, min(i, hi-1)), lo, hi
 }
 
 // reads gives the first and last node that the temperature of a place in radii depends on.
 func (m *lineMesh) reads(x float64) (first, last int) {
-	i, lo, hi := m.interval(x * m.r)
+	i, lo, hi := m.interval(m.partOf(x*m.r), x*m.r)
 	return max(lo, i-2), min(hi, i+3)
 }
 
@@ -63,7 +62,12 @@ func (m *lineMesh) at(c coord, t []float64) float64 {
 		return t[0]
 	}
 	x := c[0] * m.r
-	i, lo, hi := m.interval(x)
+	return m.within(m.partOf(x), x, t)
+}
+
+// within gives the temperature of a place, m, that lies in a layer.
+func (m *lineMesh) within(layer [2]int, x float64, t []float64) float64 {
+	i, lo, hi := m.interval(layer, x)
 	d := m.x[i+1] - m.x[i]
 	y := max(0, min(1, (x-m.x[i])/d))
 	steep := func(j int) float64 { return (t[j+1] - t[j]) / (m.x[j+1] - m.x[j]) }
@@ -100,10 +104,15 @@ func endSlope(near, next, a, b float64) float64 {
 }
 
 func (m *lineMesh) onto(other mesh) func(here, there []float64) {
-	x := other.(*lineMesh).x
+	to := other.(*lineMesh)
+	if m.kind == lumped {
+		return func(here, there []float64) { copy(there, here) }
+	}
 	return func(here, there []float64) {
-		for j := range there {
-			there[j] = m.at(coord{x[j] / m.r}, here)
+		for layer, p := range to.parts {
+			for j := p[0]; j <= p[1]; j++ {
+				there[j] = m.within(m.parts[layer], to.x[j], here)
+			}
 		}
 	}
 }
