@@ -52,7 +52,7 @@ var made = []struct {
 	make func() string
 }{
 	{"commands", commandTable}, {"sheets", sheetTables}, {"shapes", shapeTable}, {"surroundings", surroundingsTable},
-	{"stages", stageTable}, {"rules", ruleTable}, {"refused", refusedList}, {"known answers", knownTable}, {"mapping", mappingTable},
+	{"stages", stageTable}, {"rules", ruleTable}, {"refused", refusedList}, {"known answers", knownTable}, {"measured cases", measuredTable}, {"mapping", mappingTable},
 }
 
 // TestReadmeTables holds the tables of README.md equal to the lists that the program works with.
@@ -293,6 +293,15 @@ func knownTable() string {
 		rows = append(rows, []string{a.Name, fmt.Sprint(n[a.Name]), a.Help})
 	}
 	return table("Area|Cases|Held to", rows)
+}
+
+func measuredTable() string {
+	var rows [][]string
+	for _, c := range verify.MeasuredCases() {
+		r := c.Compare()
+		rows = append(rows, []string{r.ID, r.What, r.Words(), amount(r.Measured, r.Unit), amount(r.Got, r.Unit), ratio(r.Ratio), r.Asked() + ": " + metWord(r.Met), r.Taken})
+	}
+	return table("Case|Food and surroundings|What|Measured|Predicted|Ratio|Asked|What the publication does not say, and what was taken", rows)
 }
 
 // block is one fenced block of README.md.

@@ -1,6 +1,7 @@
 package verify
 
 import (
+	"errors"
 	"fmt"
 	"math"
 
@@ -95,12 +96,14 @@ func (p Problem) passes(place model.Place, c float64) func() (float64, error) {
 	}
 }
 
+var errNotPassed = errors.New("is not passed")
+
 // passing finds when a place of a history passes a temperature for good.
 func passing(h *model.History, place model.Place, c float64) (float64, error) {
 	lo, hi := 0.0, h.EndS()
 	start, end := h.At(place, lo) > c, h.At(place, hi) > c
 	if start == end {
-		return 0, fmt.Errorf("%g °C is not passed", c)
+		return 0, fmt.Errorf("%g °C: %w", c, errNotPassed)
 	}
 	for hi-lo > 1e-3 {
 		if mid := (lo + hi) / 2; h.At(place, mid) > c == start {

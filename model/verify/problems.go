@@ -83,23 +83,11 @@ func practiceCases() []Case {
 
 func measuredCases() []Case {
 	const source = "measured, mean of six: Burfoot et al., Int. J. Food Sci. Technol. 25 (1990) 657-667, as given in James & James, Meat Refrigeration (2002), Table 16.7; " +
-		"film 16.5 W/(m²·K) = 11.7 by Churchill & Bernstein (1977) for air at 1.2 m/s + 4.8 by radiation; composition of braised beef"
-	beef, _ := food.Named("Beef, brisket, flat half, lean, braised") // without it the case is an error: no food is given
-	h := 16.5
-	p := Problem{"rolled beef", model.Product{Name: "rolled beef", Shape: model.ShortCylinder, Size: model.Size{DiameterM: 0.11, LengthM: 0.271}, Food: beef, StartC: 75},
-		[]model.Step{step("chill", 10*3600, exposure(h, 0))}}
-	between := func(fromC, toC float64) func() (float64, error) {
-		return func() (float64, error) {
-			start, err := p.passes(model.Place{}, fromC)()
-			if err != nil {
-				return 0, err
-			}
-			end, err := p.passes(model.Place{}, toC)()
-			return (end - start) / 3600, err
-		}
-	}
+		"film of moving air at 1.2 m/s and radiation by the program; composition of braised beef"
+	p := Problem{"rolled beef", pieceOf("Beef, brisket, flat half, lean, braised", model.Cylinder, model.Size{DiameterM: 0.11}, 75), []model.Step{step("chill", 10*3600, blown(1.2, 0))}}
+	m := timed(p.Product, p.Steps...)
 	return []Case{
-		{"rolled beef forequarter, 110 mm, 2.7 kg, cooked to 75 °C, in air of 0 °C: centre from 70 to 10 °C", Measured, source, "h", 5.1, 0.51, between(70, 10), p},
-		{"rolled beef forequarter, 110 mm, 2.7 kg, cooked to 75 °C, in air of 0 °C: centre from 50 to 10 °C", Measured, source, "h", 4.4, 0.44, between(50, 10), p},
+		{"rolled beef forequarter, 110 mm, 2.7 kg, cooked to 75 °C, in air of 0 °C: centre from 70 to 10 °C", Measured, source, "h", 5.1, 0.51, m.from(70, 10), p},
+		{"rolled beef forequarter, 110 mm, 2.7 kg, cooked to 75 °C, in air of 0 °C: centre from 50 to 10 °C", Measured, source, "h", 4.4, 0.44, m.from(50, 10), p},
 	}
 }
