@@ -57,6 +57,7 @@ type effort struct {
 	more  float64 // factor on the number of nodes
 	tolK  float64 // error of a step in time, K
 	rough bool    // the second march, that the error is estimated with
+	kept  int     // numbers that the track may keep; 0: no bound
 	fewer float64 // rough: share of the volumes
 	ends  []Span  // rough: the steps as they ran in the first march, so that both change surroundings at the same instants
 }
@@ -66,9 +67,9 @@ type effort struct {
 // axis, and times that go with them about six times.
 func (s *solver) rougher(e effort, ran []Span) effort {
 	if s.front && s.used > 1 {
-		return effort{e.more, e.tolK * 3, true, 0.7, ran}
+		return effort{more: e.more, tolK: e.tolK * 3, rough: true, fewer: 0.7, ends: ran}
 	}
-	return effort{e.more, e.tolK * 6, true, 0.5, ran}
+	return effort{more: e.more, tolK: e.tolK * 6, rough: true, fewer: 0.5, ends: ran}
 }
 
 // How the difference of the two marches goes over into an error: that of a march with four or six times the error lies three or five
@@ -106,7 +107,7 @@ func (s *solver) march() (*History, error) {
 			Hint: "take a long cylinder of the spheroid's diameter, which is slower, or judge a probe record"})
 		return nil, s.refused
 	}
-	e := effort{more: 1, tolK: 6e-3}
+	e := effort{more: 1, tolK: 6e-3, kept: mostKept}
 	worse := float64(volumesWorse)
 	if s.polynomial() {
 		e.tolK, worse = 8e-3, polynomialsWorse
@@ -286,7 +287,7 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 			tau = end
 		}
 		f.state.accept(f.track, span.StartS+tau)
-		if len(f.track.data) > mostKept {
+		if e.kept > 0 && len(f.track.data) > e.kept {
 			s.refused.Add(cell.Error{At: st.At, Field: "Step", Typed: st.Name, Msg: "changes so fast at the surface that it takes more steps than can be kept",
 				Hint: "look at the temperatures and the sizes of the product, or use film with a coefficient that stands for everything"})
 			return cs

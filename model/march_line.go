@@ -362,17 +362,16 @@ func (m *lineMarch) try(tau, d float64) float64 {
 	m.back(m.delta)
 	worst := 0.0
 	for i, e := range m.delta {
-		l := m.laws[m.food[i]]
-		if e = math.Abs(e) * max(l.thin(m.h2[i]), heatCounts*l.thin(0)); e > worst {
+		if e = math.Abs(e) * max(m.laws[m.food[i]].thin(m.h2[i]), heatCounts); e > worst {
 			worst = e
 		}
 	}
 	return worst
 }
 
-// heatCounts is how much an error of the heat content counts, by what it would be worth in unfrozen food, where freezing food hides it: it
-// would come out as a wrong time when the food has frozen or thawed.
-const heatCounts = 0.5
+// heatCounts is what an error of the heat content counts at least, m³·K/J: half of what it is worth in unfrozen food of 3.6 MJ/(m³·K). Freezing
+// food hides it, and it would come out as a wrong time when the food has frozen or thawed.
+const heatCounts = 0.5 / 3.6e6
 
 // accept makes the last try the state.
 func (m *lineMarch) accept(k *track, t float64) {
