@@ -78,6 +78,7 @@ func (s *solver) rougher(e effort, ran []Span) effort {
 const (
 	volumesWorse     = 3
 	spaceWorse       = 1
+	stagesWorse      = 2 // polynomials with times of second order
 	polynomialsWorse = 3
 )
 
@@ -100,6 +101,30 @@ func (s *solver) mostTries() int {
 	return 2
 }
 
+// firstEffort is how finely the march is made at first, and by what the difference of the rougher march is divided.
+func (s *solver) firstEffort() (e effort, worse float64) {
+	e = effort{more: 1, tolK: 6e-3, kept: mostKept}
+	switch {
+	case !s.polynomial():
+		if s.used > 1 {
+			e.tolK = 1.5e-2
+			return e, spaceWorse
+		}
+		return e, volumesWorse
+	case s.product.Shape == Spheroid:
+		e.more, e.tolK = 1.3, 4e-3
+		return e, stagesWorse
+	case s.used > 1 && s.wets():
+		e.more, e.tolK = 1.1, 1e-2
+		return e, stagesWorse
+	}
+	e.tolK = 8e-3
+	if s.used == 3 {
+		e.more = 1.1
+	}
+	return e, polynomialsWorse
+}
+
 // march solves the product by marching, with more effort until the estimate of the error meets its goal or no more tries are left.
 func (s *solver) march() (*History, error) {
 	if s.front && s.product.Shape == Spheroid {
@@ -107,19 +132,7 @@ func (s *solver) march() (*History, error) {
 			Hint: "take a long cylinder of the spheroid's diameter, which is slower, or judge a probe record"})
 		return nil, s.refused
 	}
-	e := effort{more: 1, tolK: 6e-3, kept: mostKept}
-	worse := float64(volumesWorse)
-	if s.polynomial() {
-		e.tolK, worse = 8e-3, polynomialsWorse
-		if s.used == 3 {
-			e.more = 1.1
-		}
-	} else if s.used > 1 {
-		e.tolK, worse = 1.5e-2, spaceWorse
-	}
-	if !s.front && s.used > 1 && s.wets() {
-		e.tolK = 1e-2
-	}
+	e, worse := s.firstEffort()
 	for tries := 0; ; tries++ {
 		h, fine := s.marchOnce(e)
 		if len(s.refused) > 0 {
@@ -177,10 +190,11 @@ func (s *solver) marchOnce(e effort) (*History, *marched) {
 	s.finish(h)
 	for i := range h.Spans {
 		sp := &h.Spans[i]
-		h.hull[i][0], h.hull[i][1] = f.track.reach(sp.StartS, sp.EndS)
-		s.described(sp, h.hull[i])
+		low, high := f.track.reach(sp.StartS, sp.EndS)
+		s.described(sp, [2]float64{low, high})
+		h.hull[i] = f.bounds[i]
 	}
-	s.outside(h)
+	s.outside(f.track.reach(0, h.EndS()))
 	h.Method = f.method()
 	return h, f
 }
@@ -198,14 +212,10 @@ func (s *solver) described(sp *Span, hull [2]float64) {
 const outsideK = 0.05
 
 // outside refuses a food of which the temperatures leave its table of properties.
-func (s *solver) outside(h *History) {
+func (s *solver) outside(low, high float64) {
 	for _, f := range s.product.Foods() {
 		if !f.Table {
 			continue
-		}
-		low, high := math.Inf(1), math.Inf(-1)
-		for _, r := range h.hull {
-			low, high = min(low, r[0]), max(high, r[1])
 		}
 		if low < f.LowC-outsideK || high > f.HighC+outsideK {
 			s.refused.Add(cell.Error{At: f.At, Field: "At temperature", Typed: fmt.Sprintf("%g to %g °C", f.LowC, f.HighC),
@@ -252,6 +262,17 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 		return k
 	}
 	defer func() {
+		bound := [2]float64{s.product.StartC, s.product.StartC}
+		if n := len(f.bounds); n > 0 {
+			bound = f.bounds[n-1]
+		}
+		for _, w := range worn {
+			if !w.insulated {
+				low, high := w.mediumRange()
+				bound[0], bound[1] = min(bound[0], low), max(bound[1], high)
+			}
+		}
+		f.bounds = append(f.bounds, bound)
 		for _, w := range worn {
 			span.Films = append(span.Films, w.used(w.face, f.surfaceRange(w.skin, span.StartS, cs.durS), cs.durS))
 		}
@@ -380,6 +401,8 @@ type marched struct {
 	track *track
 	mesh  mesh
 	now   marchedShot
+	// bounds are what no place can pass, by span, °C: the start and what the surfaces so far are in balance with.
+	bounds [][2]float64
 }
 
 // mesh is the shape of a field between its nodes.
