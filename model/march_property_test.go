@@ -394,6 +394,21 @@ func TestMarchesAgreeWithTheExactMethod(t *testing.T) {
 	})
 }
 
+// marchOnceFor marches a product with an effort of one's own.
+func marchOnceFor(t testing.TB, p Product, steps []Step, e effort) *History {
+	t.Helper()
+	if found := Check(p, steps); found.Faults() > 0 {
+		t.Fatal(found)
+	}
+	s := &solver{product: &p, steps: steps, options: Options{ConductivityFactor: 1}, tmp: new(scratch)}
+	s.layOut()
+	h, _ := s.marchOnce(e)
+	if len(s.refused) > 0 {
+		t.Fatal(s.refused)
+	}
+	return h
+}
+
 // inStepsOf marches to an end, s, in n equal steps and gives the heat contents there.
 func inStepsOf(t *testing.T, f *marched, skins func(*Face) *skin, endS float64, n int) []float64 {
 	t.Helper()
