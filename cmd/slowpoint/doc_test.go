@@ -285,7 +285,7 @@ func refusedList() string {
 func knownTable() string {
 	var rows [][]string
 	n := map[string]int{}
-	cases := verify.Cases()
+	cases := append(verify.Cases(), verify.LongCases()...)
 	for i := range cases {
 		n[cases[i].Area]++
 	}

@@ -47,7 +47,7 @@ var Areas = []struct{ Name, Help string }{
 	{Spheroids, "against numerically exact solutions on the mapped ball"},
 	{Layers, "a filling in its crust with an air gap against its exact series, and steady heat through three layers by hand"},
 	{Following, "a food whose properties follow its temperature, against the exact Kirchhoff integral"},
-	{Freezing, "ice that forms over a range, in slab, cylinder and sphere, against independent finite volumes"},
+	{Freezing, "ice that forms over a range, in slab, cylinder and sphere, against independent finite volumes; ice that forms at once, against Neumann and Plank"},
 	{Reference, "whole chains in one, two and three directions, against independent solutions by two methods"},
 	{Benchmarks, "heat in metal, that programs for engineers are held to: radiation, an end that warms and cools, two directions"},
 	{Textbook, "problems with a printed answer; the allowance is that of the print"},
@@ -73,7 +73,10 @@ func Run(c Case) Result {
 	return Result{Case: c, Got: got, Met: math.Abs(got-c.Expected) <= c.Allowance}
 }
 
-// Cases lists every case, area by area.
+// LongCases lists cases that take a few tenths of a second each, or more: for the command, not for every report.
+func LongCases() []Case { return sharpCases() }
+
+// Cases lists every other case, area by area.
 func Cases() []Case {
 	var all []Case
 	for _, list := range [][]Case{seriesCases(), productCases(), halfSpaceCases(), rampCases(), chainCases(), limitCases(), spheroidCases(), layerCases(), followingCases(), freezingCases(), referenceCases(), benchmarkCases(), textbookCases(),

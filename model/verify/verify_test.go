@@ -14,7 +14,7 @@ import (
 )
 
 func TestCases(t *testing.T) {
-	cases := Cases()
+	cases := append(Cases(), LongCases()...)
 	if len(cases) < 40 {
 		t.Fatalf("%d cases, want at least 40", len(cases))
 	}
