@@ -50,7 +50,7 @@ type correlation struct {
 
 // The correlations. Their formulas stand below, with their sources.
 var (
-	freeCylinder = correlation{name: "Churchill & Chu 1975 (horizontal cylinder in still air, taken at the largest size, Rayleigh number up to 1e12)", nusselt: churchillChu, perK: churchillChuPerK, by: churchillChuBy, most: 1e12}
+	freeCylinder = correlation{name: "Churchill & Chu 1975 (horizontal cylinder in still air, Rayleigh number up to 1e12)", nusselt: churchillChu, perK: churchillChuPerK, by: churchillChuBy, most: 1e12}
 	freeSphere   = correlation{name: "Churchill 1983 (sphere in still air, Rayleigh number up to 1e13)", nusselt: sphereFree, perK: sphereFreePerK, by: sphereFreeBy, most: 1e13}
 
 	forcedCylinder = correlation{name: "Churchill & Bernstein 1977 (cylinder in cross flow, Reynolds × Prandtl number from 0.2, Reynolds number up to 1e7)", nusselt: churchillBernstein,

@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 )
 
@@ -20,15 +21,23 @@ type filmCase struct {
 // openWidthM stands for the width and length that a slab does not give: a large tray, so that films come out low.
 const openWidthM = 0.5
 
-// lengthM is the largest size across the air: the largest gives the lowest film, the safe side for heating and for chilling.
+// lengthM is the size across the air. A body of three sizes lies across it with its middle one, as the cylinder formulas take it: the
+// diameter of a long joint, the middle edge of a block, the diameter of a flat tin.
 func (c *filmCase) lengthM() float64 {
+	z := c.size
 	switch c.shape {
 	case Slab, LayeredSlab:
 		return openWidthM
 	case Stirred: // the cube of the same volume
-		return math.Cbrt(c.size.VolumeM3)
+		return math.Cbrt(z.VolumeM3)
+	case Cylinder, Sphere, ShortCylinder, Spheroid: // round ones have their diameter twice
+		return z.DiameterM
+	case Bar: // endless: the larger of two
+		return max(z.ThicknessM, z.WidthM)
 	}
-	return max(max(c.size.ThicknessM, c.size.WidthM), max(c.size.LengthM, c.size.DiameterM))
+	sizes := []float64{z.ThicknessM, z.WidthM, z.LengthM}
+	slices.Sort(sizes)
+	return sizes[1]
 }
 
 func (c *filmCase) at() string {

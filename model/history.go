@@ -108,4 +108,7 @@ type Options struct {
 	// ErrorFromS is the time after each change of surroundings from which the error is held and stated, s; 0 = 30 s, or sooner for
 	// small foods. Who needs later times only gets them with fewer polynomials. Of short steps a quarter is the most.
 	ErrorFromS float64
+	// Rough asks for a first look at what has to be marched: once, with few nodes and long steps, at a quarter of the cost. Its error is
+	// stated as roughK. What is solved exactly is not affected.
+	Rough bool
 }

@@ -397,9 +397,9 @@ func TestFilmUsedSays(t *testing.T) {
 		caution []string
 	}{
 		{"moving air", &Exposure{Surface: MovingAir, AirMS: ptr(2.1), Medium: Course{C: []float64{83}}}, Cook,
-			[]string{"Churchill & Bernstein 1977", "Reynolds number up to 1e7", "at 2.1 m/s, 163 mm", "food surface 9.0 °C, air 83.0 °C", "without radiation"}, []string{"film coefficient assumed, not measured"}},
+			[]string{"Churchill & Bernstein 1977", "Reynolds number up to 1e7", "at 2.1 m/s, 87 mm", "food surface 9.0 °C, air 83.0 °C", "without radiation"}, []string{"film coefficient assumed, not measured"}},
 		{"radiating", &Exposure{Surface: StillAir, RadiatingC: ptr(181.0), Medium: Course{C: []float64{163}}}, Cook,
-			[]string{"Churchill & Chu 1975", "radiation to 181 °C with emissivity 0.9", "at the start 63 % of the two"}, []string{"emissivity assumed: 0.9"}},
+			[]string{"Churchill & Chu 1975", "radiation to 181 °C with emissivity 0.9", "at the start 61 % of the two"}, []string{"emissivity assumed: 0.9"}},
 		{"radiating in a chiller", &Exposure{Surface: StillAir, RadiatingC: ptr(1.0), Emissivity: ptr(0.93), Medium: Course{C: []float64{2}}}, Cool,
 			[]string{"radiation to 1 °C with emissivity 0.93"}, []string{"radiation counted while chilling"}},
 		{"wet in heating, nothing else known", &Exposure{Surface: MovingAir, AirMS: ptr(2.1), Wet: ptr(true), Medium: Course{C: []float64{163}}}, Cook,

@@ -16,26 +16,40 @@ const lowConductivity = 0.9
 
 // judged predicts and judges one product.
 func (r *runner) judged(p *workbook.Product) (*report.Product, error) {
-	h, err := model.Solve(p.Product, p.Steps, model.Options{})
+	return r.judgedBy(p, model.Options{})
+}
+
+// judgedBy does so with options of the prediction.
+func (r *runner) judgedBy(p *workbook.Product, o model.Options) (*report.Product, error) {
+	h, err := model.Solve(p.Product, p.Steps, o)
 	if err != nil {
 		return nil, err
 	}
 	out := &report.Product{Product: p.Product, Steps: p.Steps, Family: p.Family, RecipeVersion: p.RecipeVersion, Batch: p.Batch,
 		Process: p.Process, Note: p.Note, History: h}
-	if out.Further, err = further(p, h); err != nil {
+	subject := rules.Subject{Product: p.Name, Family: p.Family, History: h}
+	if o.Rough { // further runs make no finding better
+		if out.Judgement = rules.Judge(r.plan.Limits, r.plan.Groups, subject); out.Judgement.Verdict == rules.NotMet {
+			return out, nil
+		}
+	}
+	if out.Further, err = further(p, h, o); err != nil {
 		return nil, err
 	}
-	out.Judgement = rules.Judge(r.plan.Limits, r.plan.Groups, rules.Subject{Product: p.Name, Family: p.Family, History: h, Further: out.Further})
+	subject.Further = out.Further
+	out.Judgement = rules.Judge(r.plan.Limits, r.plan.Groups, subject)
 	return out, nil
 }
 
 // further makes the runs that are due besides the usual one: with less conductivity where any food comes from composition, and as well
 // mixed where the food may mix by itself.
-func further(p *workbook.Product, usual *model.History) ([]rules.Run, error) {
+func further(p *workbook.Product, usual *model.History, o model.Options) ([]rules.Run, error) {
 	var out []rules.Run
 	composed := func(m *model.Material) bool { return m.Composed }
 	if slices.ContainsFunc(p.Foods(), composed) {
-		h, err := model.Solve(p.Product, p.Steps, model.Options{ConductivityFactor: lowConductivity})
+		low := o
+		low.ConductivityFactor = lowConductivity
+		h, err := model.Solve(p.Product, p.Steps, low)
 		if err != nil {
 			return nil, err
 		}
@@ -43,7 +57,7 @@ func further(p *workbook.Product, usual *model.History) ([]rules.Run, error) {
 	}
 	if model.Mixes(&p.Product) {
 		q, steps := model.Mixed(p.Product, p.Steps, usual)
-		h, err := model.Solve(q, steps, model.Options{})
+		h, err := model.Solve(q, steps, o)
 		if err != nil {
 			return nil, err
 		}

@@ -265,11 +265,11 @@ func (r *runner) changes(p *workbook.Product, now *report.Product) []change {
 // search finds the least number of steps of a change at which the limits that it aims at are met and none that was met is lost; 0 if
 // there is none. all tells whether every limit is met then; moved notes the limits that the change bears on.
 func (r *runner) search(p *workbook.Product, now *report.Product, c *change, moved map[*rules.Limit]bool) (n int, all bool) {
-	meets := func(k int) bool {
+	meets := func(k int, o model.Options) bool {
 		q := *p
 		q.Steps = slices.Clone(p.Steps)
 		c.set(&q, k)
-		d, err := r.judged(&q)
+		d, err := r.judgedBy(&q, o)
 		if err != nil {
 			return false
 		}
@@ -277,10 +277,11 @@ func (r *runner) search(p *workbook.Product, now *report.Product, c *change, mov
 		all = d.Judgement.Verdict == rules.Met
 		return all || c.aims != nil && len(missedOf(d, c.aims)) == 0 && keeps(now, d)
 	}
+	look := model.Options{Rough: true}
 	bad, good := 0, 0
 	for _, k := range c.try {
 		if k = min(k, c.most); k > bad {
-			if meets(k) {
+			if meets(k, look) {
 				good = k
 				break
 			}
@@ -290,15 +291,19 @@ func (r *runner) search(p *workbook.Product, now *report.Product, c *change, mov
 	if good == 0 {
 		return 0, false
 	}
-	reached := all
 	for good-bad > 1 {
-		if mid := (good + bad) / 2; meets(mid) {
-			good, reached = mid, all
+		if mid := (good + bad) / 2; meets(mid, look) {
+			good = mid
 		} else {
 			bad = mid
 		}
 	}
-	return good, reached
+	for ; good <= c.most; good++ { // what is named is confirmed by the run that counts
+		if meets(good, model.Options{}) {
+			return good, all
+		}
+	}
+	return 0, false
 }
 
 // keeps tells whether every limit that was met still is.
