@@ -157,8 +157,8 @@ func TestFilmBetweenNodes(t *testing.T) {
 			f := newAirFilm(speed > 0, &filmCase{shape: shape, size: Size{ThicknessM: 0.05, DiameterM: 0.07}, mediumC: 4, airMS: speed})
 			for _, airC := range []float64{-44, -3, 21, 94, 263, 610} {
 				for surface := -31.0; surface < 121; surface += 1.7 {
-					got, now := f.at(surface, airC), math.NaN()
-					if now, _ = f.which(surface, airC); math.Abs(got-now) > 1e-7*now {
+					got := f.at(surface, airC)
+					if now, _ := f.which(surface, airC); math.Abs(got-now) > 1e-7*now {
 						t.Fatalf("%s, %g m/s, surface %g, air %g °C: %.10g, want %.10g", shape.Name, speed, surface, airC, got, now)
 					}
 				}

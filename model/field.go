@@ -6,16 +6,21 @@ import (
 	"sync"
 )
 
-// A field is the temperature of every place in the food over the whole chain, in one of two forms: tensor, or product of axes.
+// A field is the temperature of every place in the food over the whole chain: exact in time as tensor, product of axes or modal, or marched.
 // Places are given in the body's own coordinates, one an axis: 0…1 from the centre to the face, or -1…1 between two faces.
 type field interface {
-	// run appends a step; pop takes the last one back.
-	run(cs *chainStep)
-	pop()
 	// course fills out with the temperatures of a place at rising times.
 	course(x coord, times, out []float64)
 	// at makes the snapshot of one instant; it is valid until the next call.
 	at(t float64) snapshot
+}
+
+// stepped is a field that is made step by step, exact in time.
+type stepped interface {
+	field
+	// run appends a step; pop takes the last one back.
+	run(cs *chainStep)
+	pop()
 }
 
 // snapshot is a field at one instant.

@@ -8,7 +8,6 @@ import (
 // roundMesh is a spheroid in the coordinates of its map, in which fields that are smooth in space are polynomials in ρ² and μ².
 type roundMesh struct {
 	spaceMesh
-	a, b       float64   // m
 	rr, rm, mm []float64 // by node: share of the volume times the squared gradients of rho, their product, of mu, 1/m²
 	face       []float64 // by node on the surface: what a flow adds to the rate, 1/m
 	fast       float64   // largest rate of decay, 1/m²

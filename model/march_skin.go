@@ -44,18 +44,3 @@ func (s *skin) balanceC(tau float64) float64 {
 	}
 	return (lo + hi) / 2
 }
-
-// steepest is the largest slope of the flux between two surface temperatures, W/(m²·K).
-func (s *skin) steepest(low, high float64) float64 {
-	if s.linear {
-		return s.totalW
-	}
-	most := 0.0
-	for _, tau := range s.looks() {
-		for i := 0; i <= 24; i++ {
-			_, d := s.exact(low+(high-low)*float64(i)/24, tau)
-			most = max(most, -d)
-		}
-	}
-	return most
-}

@@ -161,7 +161,7 @@ func TestStatedErrorOfWholeBodiesIsHonest(t *testing.T) {
 			}
 			fine := newModal(fn, h.body.nodes, p.StartC, &slab{}, &slab{wide: 1})
 			for i := range steps {
-				fine.run(s.film(&Span{Step: &steps[i]}, 50, steps[i].DurationS))
+				fine.run(s.film(&Span{Step: &steps[i]}, 50))
 			}
 			a, b := make([]float64, h.body.nodes.count()), make([]float64, h.body.nodes.count())
 			worst := 0.0

@@ -285,20 +285,6 @@ func (s *productShot) mean() float64 {
 	return sum
 }
 
-// freezingC is the highest freezing point of its foods, °C; nil if one is not known.
-func (p *Product) freezingC() *float64 {
-	var most *float64
-	for _, f := range p.Foods() {
-		if f.FreezingC == nil {
-			return nil
-		}
-		if most == nil || *f.FreezingC > *most {
-			most = f.FreezingC
-		}
-	}
-	return most
-}
-
 // together gives the properties at a temperature of a slab that conducts and holds as much heat as the layers with their joints, with the
 // density of the whole.
 func (p *Product) together(tC float64) Properties {

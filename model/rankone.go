@@ -81,7 +81,7 @@ func secularRoot(d, v2 []float64, rho, sum float64, j int) (from int, delta floa
 	}
 	from = j
 	lo, hi := 0.0, width
-	x := width / 2
+	var x float64
 	if j < n-1 {
 		s, half := 1/rho, width/2
 		for k, z := range v2 {

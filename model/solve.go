@@ -288,7 +288,7 @@ func (s *solver) run(more int) *History {
 		t += cs.durS
 		span.EndS = t
 		h.Spans = append(h.Spans, span)
-		if i+1 < len(s.steps) && (s.searches(&s.steps[i+1]) || inAir(s.product.Shape, &s.steps[i+1])) {
+		if i+1 < len(s.steps) && inAir(s.product.Shape, &s.steps[i+1]) {
 			lo, hi = h.body.range_(s.main.at(t))
 		}
 		if span.MediumFromC != nil && h.Bound == "" {
@@ -301,7 +301,7 @@ func (s *solver) run(more int) *History {
 }
 
 // build runs the chain, or only its last step if a field that holds the others is given; a new field lies in mem.
-func (s *solver) build(axes [3]*axis, nd *nodes, f field, mem *slab) field {
+func (s *solver) build(axes [3]*axis, nd *nodes, f field, mem *slab) stepped {
 	if m, ok := f.(*modal); ok {
 		m.run(s.chain[len(s.chain)-1])
 		return m
@@ -336,33 +336,24 @@ func (s *solver) build(axes [3]*axis, nd *nodes, f field, mem *slab) field {
 	return t
 }
 
-// step runs the next step: to its end, or until the slowest place reaches its goal. What is taken at the mean of the food in the step
-// is taken again where the step ends early.
+// step runs the next step: to its end, or until the slowest place reaches its goal.
 func (s *solver) step(h *History, span *Span, axes [3]*axis, nd *nodes, lo, hi float64) *chainStep {
 	st := span.Step
-	within := st.DurationS
-	for pass := 0; ; pass++ {
-		cs := s.ready(h.body, span, axes, nd, [2]float64{lo, hi}, within)
-		s.chain = append(s.chain, cs)
-		s.main = s.build(axes, nd, s.main, &slab{})
-		h.field = s.main
-		if st.UntilC == nil {
-			return cs
-		}
-		durS, reached := s.until(h, span.StartS, span.StartS+cs.durS, *st.UntilC, st.Stage.Heats)
-		span.Reached = &reached
-		if !reached {
-			return cs
-		}
-		s.main.pop()
-		if pass == 2 || !s.searches(st) {
-			cs.durS = durS
-			s.main.run(cs)
-			return cs
-		}
-		s.chain = s.chain[:len(s.chain)-1]
-		within = durS
+	cs := s.ready(span, lo, hi)
+	s.chain = append(s.chain, cs)
+	f := s.build(axes, nd, s.main, &slab{})
+	s.main, h.field = f, f
+	if st.UntilC == nil {
+		return cs
 	}
+	durS, reached := s.until(h, span.StartS, span.StartS+cs.durS, *st.UntilC, st.Stage.Heats)
+	span.Reached = &reached
+	if reached {
+		f.pop()
+		cs.durS = durS
+		f.run(cs)
+	}
+	return cs
 }
 
 // inAir tells whether a step has air around the food.
@@ -391,67 +382,19 @@ func (s *solver) airQuestion(st *Step, coldest float64) {
 	}
 }
 
-// ready decides the properties and films of the next step. The properties are those at the mean of the coldest and hottest
-// food in the first within seconds of the step, counting anything above 100 °C as 100; food is the range at its start, °C.
-func (s *solver) ready(body *body, span *Span, axes [3]*axis, nd *nodes, food [2]float64, within float64) *chainStep {
-	st := span.Step
-	cold, hot := food[0], food[1] // first guess: the food comes all the way to its media
-	for _, e := range exposures(s.product.Shape, st) {
-		for _, m := range s.raised(st, e, nil).C {
-			if m < cold {
-				cold = m
-			}
-			if m > hot {
-				hot = m
-			}
+// ready makes the next step ready; cold and hot are the range of the food at its start, °C. What is constant is told at the mean of that
+// and the media, counting anything above 100 °C as 100.
+func (s *solver) ready(span *Span, cold, hot float64) *chainStep {
+	for _, e := range exposures(s.product.Shape, span.Step) {
+		for _, m := range s.raised(span.Step, e, nil).C {
+			cold, hot = min(cold, m), max(hot, m)
 		}
 	}
-	for try := 0; ; try++ {
-		mean := (min(cold, 100) + min(hot, 100)) / 2
-		cs := s.film(span, mean, within)
-		if try == 2 || !s.searches(st) {
-			return cs
-		}
-		s.chain = append(s.chain, cs)
-		f := s.build(axes, nd, s.main, &slab{})
-		s.chain = s.chain[:len(s.chain)-1]
-		cold, hot = food[0], food[1]
-		for k := 1; k <= 8; k++ {
-			a, b := body.range_(f.at(span.StartS + within*float64(k*k)/64))
-			cold, hot = min(cold, a), max(hot, b)
-		}
-		if f == s.main {
-			f.pop()
-		}
-	}
+	return s.film(span, (min(cold, boilingLimitC)+min(hot, boilingLimitC))/2)
 }
 
-// searches tells whether properties or films of the step depend on the food's temperature, so that it has to be solved to know them.
-func (s *solver) searches(st *Step) bool {
-	for _, f := range s.product.Foods() {
-		if f.Composed {
-			return true
-		}
-	}
-	for _, e := range exposures(s.product.Shape, st) {
-		if e.filmDepends() {
-			return true
-		}
-	}
-	return false
-}
-
-// filmK is the largest difference between food and air at which a film is taken, K: the film of still air falls with it, and what
-// decides a chill or a reheat is its slow end.
-const filmK = 10
-
-// filmDepends tells whether the film depends on temperatures.
-func (e *Exposure) filmDepends() bool {
-	return (e.Surface == StillAir || e.Surface == MovingAir) && e.FilmW == nil
-}
-
-// film makes a step ready with properties and films at a mean temperature of the food in its first within seconds.
-func (s *solver) film(span *Span, meanC, within float64) *chainStep {
+// film makes a step ready with properties and films at a mean temperature of the food.
+func (s *solver) film(span *Span, meanC float64) *chainStep {
 	st := span.Step
 	span.Props, span.PropsAtC = s.props(meanC), meanC
 	span.Films = span.Films[:0]
@@ -474,10 +417,6 @@ func (s *solver) film(span *Span, meanC, within float64) *chainStep {
 		}
 		m := s.raised(st, e, span)
 		fc := filmCase{shape: s.product.Shape, size: s.product.Size, foodC: meanC, altitudeM: st.AltitudeM}
-		if e.filmDepends() {
-			fc.mediumC = m.meanC(within)
-			fc.foodC = fc.mediumC + max(-filmK, min(filmK, meanC-fc.mediumC))
-		}
 		if e.AirMS != nil {
 			fc.airMS = *e.AirMS
 		}

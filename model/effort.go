@@ -1,0 +1,78 @@
+package model
+
+// effort is how finely a march is made.
+type effort struct {
+	more  float64 // factor on the number of nodes
+	tolK  float64 // error of a step in time, K
+	rough bool    // the second march, that the error is estimated with
+	kept  int     // numbers that the track may keep; 0: no bound
+	fewer float64 // rough: share of the volumes
+	ends  []Span  // rough: the steps as they ran in the first march, so that both change surroundings at the same instants
+}
+
+// rougher is the effort of the second march. A step's error in time is of third order, so that their sum goes with the tolerance to 2/3.
+// Control volumes, with half the nodes, and times that go with them make about four times the error; polynomials, two fewer on each half
+// axis, and times that go with them about six times.
+func (s *solver) rougher(e effort, ran []Span) effort {
+	if s.front && s.used > 1 {
+		return effort{more: e.more, tolK: e.tolK * 3, rough: true, fewer: 0.7, ends: ran}
+	}
+	return effort{more: e.more, tolK: e.tolK * 6, rough: true, fewer: 0.5, ends: ran}
+}
+
+// How the difference of the two marches goes over into an error: that of a march with four or six times the error lies three or five
+// errors off, less some for doubt; where a front moves in more directions than one the rougher march has seven tenths of the volumes, and
+// twice the error.
+const (
+	volumesWorse     = 3
+	spaceWorse       = 1
+	stagesWorse      = 2   // polynomials with times of second order
+	roundWorse       = 1.5 // of cylinders and spheres: their centre has no node, and is where the error is largest
+	polynomialsWorse = 3
+)
+
+// polynomial tells whether the march has polynomials in space: smooth fields.
+func (s *solver) polynomial() bool { return s.used > 0 && !s.front && s.product.Shape != LayeredSlab }
+
+// marchGoalK is the error that a march is to keep, K.
+const marchGoalK = 0.019
+
+// mostTries is how often a march may be made again with more effort. A front of ice makes every place turn in its own instant, which more
+// nodes and shorter steps move a little, and so does a surface that comes to boil; in two and three directions they cost more than they
+// are worth. What is left is stated.
+func (s *solver) mostTries() int {
+	switch {
+	case s.front && s.used > 1:
+		return 0
+	case s.front || s.used > 1 && s.wets():
+		return 1
+	}
+	return 2
+}
+
+// firstEffort is how finely the march is made at first, and by what the difference of the rougher march is divided.
+func (s *solver) firstEffort() (e effort, worse float64) {
+	e = effort{more: 1, tolK: 6e-3, kept: mostKept}
+	switch {
+	case !s.polynomial():
+		if s.used > 1 {
+			e.tolK = 1.5e-2
+			return e, spaceWorse
+		}
+		return e, volumesWorse
+	case s.product.Shape == Spheroid:
+		e.more, e.tolK = 1.3, 4e-3
+		return e, stagesWorse
+	case s.used > 1 && s.wets():
+		e.more, e.tolK = 1.1, 1e-2
+		return e, stagesWorse
+	}
+	e.tolK = 8e-3
+	if s.used == 3 {
+		e.more = 1.1
+	}
+	if s.used == 1 && (s.kinds[0] == radial || s.kinds[0] == spherical) {
+		return e, roundWorse
+	}
+	return e, polynomialsWorse
+}

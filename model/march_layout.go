@@ -1,0 +1,190 @@
+package model
+
+import "math"
+
+// newMarched lays out the march of a product.
+func (s *solver) newMarched(e effort) *marched {
+	laws := s.lawsOf()
+	f := &marched{track: &track{}}
+	switch {
+	case s.product.Shape == Spheroid:
+		s.layRound(f, laws[0], e)
+	case s.used > 1 || s.polynomial():
+		s.laySpace(f, laws[0], e)
+	default:
+		s.layLine(f, laws, e)
+	}
+	f.track.n = len(f.mesh.weights())
+	f.track.laws = f.state.keepsHeat()
+	f.now = marchedShot{f, make([]float64, f.track.n)}
+	return f
+}
+
+// layLine lays out a body of one axis, a layered slab, or a stirred food.
+func (s *solver) layLine(f *marched, laws []*law, e effort) {
+	kind, r := s.kinds[0], s.radii[0]
+	if s.used == 0 {
+		kind, r = lumped, s.product.Size.VolumeM3/s.product.Size.AreaM2
+	}
+	kinds := s.kinds
+	if s.product.Shape == LayeredSlab {
+		kind, kinds[0] = planeFull, planeFull
+	}
+	g := newLineGrid(s.product, kind, r, e.volumes(lineNodes), lineCrowd)
+	m := newLineMarch(g, laws)
+	m.lower, m.upper = s.faces[0][0], s.faces[0][1]
+	m.fill(s.product.StartC)
+	f.state, f.mesh = m, newLineMesh(g)
+	nd := &nodes{x: [3][]float64{make([]float64, len(g.x)), {0}, {0}}}
+	for i, x := range g.x {
+		nd.x[0][i] = x / g.r
+	}
+	f.body = newBody(body{kinds: kinds, radii: s.radii, pieces: true}, nd)
+}
+
+// laySpace lays out a body of two or three axes, or of one without a front.
+func (s *solver) laySpace(f *marched, l *law, e effort) {
+	var axes [3]*spaceAxis
+	var by [3]stretch
+	nd := &nodes{x: [3][]float64{{0}, {0}, {0}}, phi: [3][]float64{{1}, {1}, {1}}}
+	front := s.front
+	for a := range axes {
+		switch {
+		case a >= s.used:
+			axes[a] = &spaceAxis{kind: lumped, n: 1, x: []float64{0}, w: []float64{1}, k: []float64{0}}
+			continue
+		case front:
+			axes[a] = cutAxis(s.kinds[a], s.radii[a], e.volumes(cutNodes[s.used]), s.faces[a])
+			nd.x[a] = axes[a].x
+			continue
+		}
+		by[a] = s.stretchOf(a)
+		axes[a] = smoothAxis(s.kinds[a], s.radii[a], s.smoothNodes(a, e), by[a], s.faces[a])
+		axes[a].bodyNodes(nd, a)
+	}
+	march := newSpaceMarch(axes, l, s.product.StartC)
+	f.state, f.mesh = march, newSpaceMesh(axes)
+	if !front && (s.used == 1 || !s.wets()) {
+		f.state = newModesMarch(march, e.tolK/4)
+	}
+	f.body = newBody(body{kinds: s.kinds, radii: s.radii, by: by, pieces: front}, nd)
+}
+
+// marchSettleS is the longest time after a change of surroundings from which the error is held where polynomials in two or three
+// directions are marched, s: the first minutes of a thick food would need many times the polynomials of all that follows.
+const marchSettleS = 300
+
+// marchSettle is that time.
+func (s *solver) marchSettle(alpha float64) float64 {
+	settle := float64(marchSettleS)
+	for a := 0; a < s.used; a++ {
+		settle = min(settle, settleFo*s.radii[a]*s.radii[a]/alpha)
+	}
+	return settle
+}
+
+// crowding is how thin a layer at a far face is taken to be, by the thinnest half axis.
+const crowding = 1.5
+
+// crowded is the factor by which an axis is crowded at its faces.
+func (s *solver) crowded(a int) float64 {
+	thin := s.radii[a]
+	for i := 0; i < s.used; i++ {
+		thin = min(thin, s.radii[i])
+	}
+	return max(0.1, min(1, crowding*thin/s.radii[a]))
+}
+
+// wets tells whether moisture counts on any surface: near boiling its flow is so steep, and so much steeper at an edge than beside it, that no
+// linear problem is close to it all over a face.
+func (s *solver) wets() bool {
+	for i := range s.steps {
+		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
+			if e.wet() || e.steamWithAir() {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// stretchOf is the stretch of an axis.
+func (s *solver) stretchOf(a int) stretch { return stretchFor(s.crowded(a)) }
+
+// smoothNodes is how many polynomials an axis gets: a stretched one as many as one of its crowded radius, and some for the stretch.
+func (s *solver) smoothNodes(a int, e effort) int {
+	by := s.crowded(a)
+	fo := s.foMin[a]
+	s.foMin[a] /= by * by
+	n := int(math.Round((float64(s.degrees(a, 0)) + 2*(1-by)) * e.more))
+	s.foMin[a] = fo
+	if e.rough {
+		n += s.fewer(a, 0) - s.degrees(a, 0)
+	}
+	return min(n, maxDegrees)
+}
+
+// volumes is how many control volumes an axis gets of n.
+func (e effort) volumes(n int) int {
+	if e.rough {
+		return int(math.Round(float64(n) * e.more * e.fewer))
+	}
+	return int(math.Round(float64(n) * e.more))
+}
+
+// bodyNodes gives the nodes that a body looks at: those of the axis, and a centre of symmetry.
+func (a *spaceAxis) bodyNodes(nd *nodes, axis int) {
+	x := a.x
+	if a.kind != planeFull {
+		x = append([]float64{0}, x...)
+	}
+	nd.x[axis], nd.phi[axis] = x, make([]float64, len(x)*a.n)
+	for g, at := range x {
+		a.poly.values(at, nd.phi[axis][g*a.n:(g+1)*a.n], nil)
+	}
+}
+
+// mayFreeze tells whether any place of a food that freezes may pass its freezing point.
+func (s *solver) mayFreeze() bool {
+	for _, f := range s.product.Foods() {
+		if !f.freezes() {
+			continue
+		}
+		if s.product.StartC < *f.FreezingC {
+			return true
+		}
+		for i := range s.steps {
+			for _, e := range exposures(s.product.Shape, &s.steps[i]) {
+				if low, _ := s.skinOf(e, nil, &s.steps[i]).mediumRange(); low < *f.FreezingC {
+					return true
+				}
+			}
+		}
+	}
+	return false
+}
+
+// lawsOf makes the laws of the foods, by layer; they are made once for all marches of the product.
+func (s *solver) lawsOf() []*law {
+	if s.laws == nil {
+		made := map[*Material]*law{}
+		of := func(m *Material) *law {
+			if made[m] == nil {
+				made[m] = newLaw(m, s.options.ConductivityFactor)
+			}
+			return made[m]
+		}
+		if s.product.Food != nil {
+			s.laws = append(s.laws, of(s.product.Food))
+		}
+		for i := range s.product.Layers {
+			s.laws = append(s.laws, of(s.product.Layers[i].Food))
+		}
+	}
+	return s.laws
+}
+
+// lineNodes is how many volumes a half axis gets at first, cutNodes how many by the number of axes where a front moves through more than one.
+const lineNodes = 84
+
+var cutNodes = [4]int{2: 22, 3: 14}

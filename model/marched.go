@@ -1,0 +1,126 @@
+package model
+
+import "math"
+
+// marched is a field that was marched: the track of its nodes, and what stands between them.
+type marched struct {
+	body  *body
+	state marcher
+	track *track
+	mesh  mesh
+	now   marchedShot
+	// bounds are what no place can pass, by span, °C: the start and what the surfaces so far are in balance with.
+	bounds [][2]float64
+}
+
+// mesh is the shape of a field between its nodes.
+type mesh interface {
+	// at gives the temperature of a place from those of the nodes.
+	at(x coord, nodes []float64) float64
+	// weights of the nodes in the volume mean; they add up to 1.
+	weights() []float64
+	// onto gives a function that fills there with the temperatures at the nodes of another mesh of the same kind, from those at its own.
+	onto(other mesh) func(here, there []float64)
+	// neighbours calls do for the nodes beside a node.
+	neighbours(j int, do func(k int))
+	// fill gives the temperatures at the nodes of the body, which may be more than those of the march.
+	fill(nodes, out []float64)
+	// slice gives the coefficients of the polynomials along an axis through a place, where the mesh has polynomials.
+	slice(nodes []float64, axis int, x coord, node [3]int, out []float64)
+	// words for the report
+	String() string
+}
+
+func (f *marched) course(x coord, times, out []float64) {
+	if m, ok := f.mesh.(weighted); ok && f.track.laws == nil && f.state.keepsHeat() == nil {
+		w := m.placeWeights(x)
+		for i, t := range times {
+			out[i] = f.track.sum(f.track.find(t), w)
+		}
+		return
+	}
+	now := f.now.c
+	for i, t := range times {
+		f.track.all(f.track.find(t), now)
+		out[i] = f.mesh.at(x, now)
+	}
+}
+
+// weighted is a mesh in which the temperature of a place is a sum over the nodes.
+type weighted interface{ placeWeights(x coord) []float64 }
+
+// marchedShot is a marched field at one instant.
+type marchedShot struct {
+	f *marched
+	c []float64
+}
+
+func (f *marched) at(t float64) snapshot {
+	f.track.all(f.track.find(t), f.now.c)
+	return &f.now
+}
+
+func (s *marchedShot) grid(out []float64) { s.f.mesh.fill(s.c, out) }
+
+func (s *marchedShot) slice(axis int, x coord, node [3]int, out []float64) {
+	s.f.mesh.slice(s.c, axis, x, node, out)
+}
+
+func (s *marchedShot) mean() float64 {
+	sum := 0.0
+	for i, w := range s.f.mesh.weights() {
+		sum += w * s.c[i]
+	}
+	return sum
+}
+
+func (f *marched) method() string {
+	return "conduction by heat content, marched in time; " + f.mesh.String()
+}
+
+// differs gives the largest difference from a rougher march at its nodes, from settle after each change on. Where a front of ice moves it
+// leaves out the nodes beside the front: a place there warms by degrees in seconds when the front passes, in both marches, but not in
+// the same second.
+func (f *marched) differs(h *History, rough *marched) float64 {
+	worst := 0.0
+	mine, other, there := make([]float64, f.track.n), make([]float64, rough.track.n), make([]float64, f.track.n)
+	end := rough.track.times[len(rough.track.times)-1]
+	onto := rough.mesh.onto(f.mesh)
+	grow := 1.4
+	if f.track.laws != nil { // every node turns in its own time
+		grow = 1.1
+	}
+	for i := range h.Spans {
+		sp := &h.Spans[i]
+		for tau := h.settle; ; tau *= grow {
+			t := min(sp.StartS+tau, sp.EndS)
+			f.track.all(f.track.find(t), mine)
+			rough.track.all(rough.track.find(min(t, end)), other)
+			onto(other, there)
+			for j, c := range mine {
+				if d := math.Abs(c - there[j]); d > worst && !f.atFront(mine, there, j) {
+					worst = d
+				}
+			}
+			if t == sp.EndS {
+				break
+			}
+		}
+	}
+	return worst
+}
+
+// atFront tells whether the front of ice stands beside node j in one march or between the two marches.
+func (f *marched) atFront(mine, there []float64, j int) bool {
+	if f.track.laws == nil {
+		return false
+	}
+	zero := f.track.laws[j].zeroC
+	frozen := mine[j] < zero
+	if there[j] < zero != frozen {
+		return true
+	}
+	beside := false
+	f.mesh.neighbours(j, func(k int) { beside = beside || mine[k] < zero != frozen || there[k] < zero != frozen })
+	return beside
+}
