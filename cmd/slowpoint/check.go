@@ -479,6 +479,9 @@ func (r *runner) tell(w io.Writer) {
 		fmt.Fprintf(w, "… at most %d of a kind are shown here; all of them are in report.txt\n", most)
 	}
 	fmt.Fprintf(w, "\n%s\nCalculated from the inputs, not measured; your food authority decides.\nResults in %s\n", r.counts(), r.folder)
+	if stale := r.shelf.stale(); stale != "" {
+		fmt.Fprintln(w, stale)
+	}
 }
 
 // firstFault is the first error of a product that was not calculated, and how many more it has.

@@ -466,3 +466,21 @@ func TestWriteWhole(t *testing.T) {
 		t.Errorf("%d files are left", len(list))
 	}
 }
+
+// Whoever runs a plan again without PDFs, or a part of it, is told which files in the folder are of an earlier run.
+func TestFilesOfAnEarlierRunAreTold(t *testing.T) {
+	out := filepath.Join(t.TempDir(), "results")
+	plan := filepath.Join("..", "..", "examples", "eggs-and-dumplings", "plan.xlsx")
+	said := func(more ...string) string {
+		var told, errs bytes.Buffer
+		run(append([]string{"check", plan, "--out", out}, more...), nil, &told, &errs)
+		return told.String()
+	}
+	const left = "Left from an earlier run, not of this one: "
+	if got := said("--one-pdf"); strings.Contains(got, left) {
+		t.Errorf("first run: %s", got)
+	}
+	if got := said("--no-pdf"); !strings.Contains(got, left+"summary.pdf\n") {
+		t.Errorf("without PDFs: %s", got)
+	}
+}

@@ -107,7 +107,18 @@ func (s *shelf) clear() string {
 		in = " in " + filepath.Dir(s.due[0])
 	}
 	text := fmt.Sprintf("%s of this run finished and whole%s", count(len(s.whole), "file"), in)
-	var missing, earlier []string
+	missing, earlier := s.others()
+	if len(missing) > 0 {
+		text += "; not written: " + few(missing)
+	}
+	if len(earlier) > 0 {
+		text += "; of an earlier run: " + few(earlier)
+	}
+	return text
+}
+
+// others gives the files of the run that are not whole, and those in the folder that are of an earlier run of the plan.
+func (s *shelf) others() (missing, earlier []string) {
 	for _, path := range s.due {
 		if !s.whole[path] {
 			missing = append(missing, path)
@@ -118,13 +129,17 @@ func (s *shelf) clear() string {
 			earlier = append(earlier, path)
 		}
 	}
-	if len(missing) > 0 {
-		text += "; not written: " + few(missing)
+	return missing, earlier
+}
+
+// stale says which files in the folder are of an earlier run and not of this one, which is over; "" if there are none.
+func (s *shelf) stale() string {
+	s.mu.Lock()
+	defer s.mu.Unlock()
+	if _, earlier := s.others(); len(earlier) > 0 {
+		return "Left from an earlier run, not of this one: " + few(earlier)
 	}
-	if len(earlier) > 0 {
-		text += "; of an earlier run: " + few(earlier)
-	}
-	return text
+	return ""
 }
 
 // few names files, without their folder, the first five of them.
