@@ -53,8 +53,11 @@ type History struct {
 	HumidityPc func(t float64) float64
 
 	Points []Point // "centre" first, then the user's
-	ErrorK float64 // honest estimate of the largest error at any place, from half a minute after each change of surroundings (sooner for small foods)
-	Method string  // in words, for the report
+	ErrorK float64 // honest estimate of the largest error at any place, from ErrorFromS after each change of surroundings
+	// ErrorFromS is half a minute at most, s, but for large foods that are marched in two or three directions, whose edges take minutes.
+	ErrorFromS float64
+	IceMoves   bool   // ice may form or melt: ErrorK leaves out the places beside its front, which change by degrees in seconds
+	Method     string // in words, for the report
 	// Warnings are what only the calculation shows and what makes its result doubtful: food that is hotter than boiling water throughout.
 	Warnings cell.Errors
 	// Bound says in words why temperatures are bounds from BoundFromS on (a chill medium raised to the freezing point:

@@ -142,6 +142,7 @@ func (s *solver) marchOnce(e effort) (*History, *marched) {
 	}
 	s.outside(f.track.reach(0, h.EndS()))
 	h.Method = f.method()
+	h.IceMoves = s.front
 	return h, f
 }
 

@@ -810,7 +810,7 @@ func (s *solver) finish(h *History) {
 		return lineAt(m.TimesS, m.C, t-sp.StartS)
 	}
 	h.HumidityPc = func(t float64) float64 { return humidityAt(spans, t) }
-	h.settle = s.settle
+	h.settle, h.ErrorFromS = s.settle, s.settle
 	for _, cs := range s.chain {
 		h.knots = append(h.knots, cs.knots)
 	}

@@ -784,7 +784,24 @@ func (x *sheet) levelsSentence() string {
 }
 
 func (x *sheet) errorSentence() string {
-	return say("error sentence", x.head.errorWords(x.decides.history.ErrorK))
+	h := x.decides.history
+	return say("error sentence", x.head.errorWords(h.ErrorK), sinceWords(h), iceWords(h))
+}
+
+// sinceWords says from when after a change of surroundings the stated error holds.
+func sinceWords(h *model.History) string {
+	if h.ErrorFromS <= 30 {
+		return say("error since")
+	}
+	return duration(h.ErrorFromS, up)
+}
+
+// iceWords says where the stated error does not hold; "" where it holds everywhere.
+func iceWords(h *model.History) string {
+	if !h.IceMoves {
+		return ""
+	}
+	return say("error ice")
 }
 
 // slowest is the table of the steps with the coldest and the hottest place at the end of each, and how they move.

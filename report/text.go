@@ -85,7 +85,7 @@ var textWords = map[string]string{
 	"factor":         "%s: %s",
 	"factor from":    " (from: %s)",
 	"method":         "Method: %s.",
-	"error":          "Error estimate: %s at any place, from half a minute after each change of surroundings.",
+	"error":          "Error estimate: %s at any place, from %s after each change of surroundings%s.",
 	"interval":       "Courses are written every %s and at each change of step; limits are judged from the field itself, not from this interval.",
 	"bound":          "From %s on the temperatures are bounds: %s",
 	"cautions":       "Cautions for this run",
@@ -324,7 +324,7 @@ func (t *Text) basis(x *sheet) {
 	}
 	w := x.p.History
 	t.line("method", w.Method)
-	t.line("error", t.h.errorWords(w.ErrorK))
+	t.line("error", t.h.errorWords(w.ErrorK), sinceWords(w), iceWords(w))
 	if t.h.EveryS > 0 {
 		t.line("interval", duration(t.h.EveryS, nearest))
 	}
