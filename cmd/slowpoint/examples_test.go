@@ -32,6 +32,9 @@ var examples = []struct {
 	{"roast", []string{"--every", "600s"}, exitNotMet, nil},
 	{"eggs-and-dumplings", []string{"--every", "600s"}, exitNotMet, nil},
 	{"letter-and-inches", []string{"--every", "600s"}, exitMet, nil},
+	{"frozen-to-tray", []string{"--every", "600s"}, exitNotMet, nil},
+	{"pie-in-a-tin", []string{"--every", "600s"}, exitNotMet, nil},
+	{"humid-and-dry-oven", []string{"--every", "600s"}, exitNotMet, nil},
 	{"sixty-products", []string{"--every", "3600s"}, exitInput, []string{"summary.pdf", "report.txt", "results.json"}},
 }
 
