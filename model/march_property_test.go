@@ -200,6 +200,9 @@ func faceByVolume(p *Product) float64 {
 // A known flow goes in and out again: in every shape what is gained is the flow by surface and time, and at the end the food holds as much
 // heat as at the start, to 1e-9, whatever it did in between: freezing, thawing, or properties that follow the temperature.
 func TestFreezingAndThawingReturnTheHeat(t *testing.T) {
+	if testing.Short() {
+		t.Skip("long")
+	}
 	worst := 0.0
 	eachDrawn(t, 1, marchedShapes, func(t *testing.T, d *drawn) {
 		const durationS = 12000.0
@@ -233,6 +236,9 @@ func TestFreezingAndThawingReturnTheHeat(t *testing.T) {
 
 // Nothing gets colder or hotter than the start and the media in films that are constant; nodes are looked at, which nothing clamps.
 func TestMarchedNodesStayBetweenStartAndMedia(t *testing.T) {
+	if testing.Short() {
+		t.Skip("long")
+	}
 	eachDrawn(t, 1, marchedShapes, func(t *testing.T, d *drawn) {
 		e := effort{more: 1, tolK: 2e-3}
 		s, _ := readyMarch(t, &d.Product, d.steps, e)
@@ -312,6 +318,9 @@ func atIce(h *History, p Place, at float64) bool {
 // The error that a history states holds against a march with more nodes and a finer tolerance in time. Freezing bricks and short
 // cylinders are left out for the time that they take: bars go the same way. Ice in spheroids is refused.
 func TestStatedErrorOfMarchesIsHonest(t *testing.T) {
+	if testing.Short() {
+		t.Skip("long")
+	}
 	most := 0.0
 	eachDrawn(t, 2, marchedShapes, func(t *testing.T, d *drawn) {
 		e := effort{more: 1.7, tolK: 2e-4}
