@@ -455,7 +455,11 @@ func (x *sheet) front() {
 		if g.AnyOf {
 			key = "group any"
 		}
-		d.text(say(key, g.Group, g.Verdict.String(), g.DecidedBy))
+		by := ""
+		if g.DecidedBy != "" {
+			by = say("group by", g.DecidedBy)
+		}
+		d.text(say(key, g.Group, g.Verdict.String(), by))
 	}
 	var missing []string
 	seen := map[*rules.Limit]bool{}
