@@ -51,8 +51,8 @@ func (s *solver) hotter(step int, limit float64) *Exposure {
 		var hottest *Exposure
 		most := limit
 		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
-			if !e.Surface.NoMedium && e.Medium.mostC() > most {
-				hottest, most = e, e.Medium.mostC()
+			if !e.Surface.NoMedium && e.mostC() > most {
+				hottest, most = e, e.mostC()
 			}
 		}
 		if hottest != nil {
@@ -60,6 +60,14 @@ func (s *solver) hotter(step int, limit float64) *Exposure {
 		}
 	}
 	return nil
+}
+
+// mostC is the highest temperature of the surroundings, °C: of the medium or of the walls that the food sees.
+func (e *Exposure) mostC() float64 {
+	if e.RadiatingC != nil {
+		return max(e.Medium.mostC(), *e.RadiatingC)
+	}
+	return e.Medium.mostC()
 }
 
 // mostC is the highest temperature of a course, °C.
@@ -84,7 +92,10 @@ func (s *solver) boilsOver(h *History, e *Exposure, sp *Span, t, limit float64) 
 	}
 	low, _ := h.body.extremes(s.main.at(t))
 	field, typed := "Temperature", fmt.Sprintf("%g °C", e.Medium.mostC())
-	if e.Medium.Name != "" {
+	switch {
+	case e.RadiatingC != nil && *e.RadiatingC > e.Medium.mostC():
+		field, typed = "Radiating temperature", fmt.Sprintf("%g °C", *e.RadiatingC)
+	case e.Medium.Name != "":
 		field, typed = "Course", e.Medium.Name
 	}
 	altitude := sp.Step.AltitudeM
@@ -92,8 +103,5 @@ func (s *solver) boilsOver(h *History, e *Exposure, sp *Span, t, limit float64) 
 	msg := fmt.Sprintf("would heat %s beyond boiling throughout: even its coldest place (%s) passes %.1f °C %.0f min into the step %s and is at %.1f °C %.0f min into it, but water boils at %.1f °C at %g m above the sea, and food that holds water does not get hotter inside while it boils off; conduction without evaporation does not describe that, so do not rely on what is calculated from there on",
 		s.product.Name, place, limit, (after-sp.StartS)/60, sp.Step.Name, low.c, (t-sp.StartS)/60, boilingC(altitude), altitude)
 	hint := "look at the temperature and its unit (°F typed in a °C column?), or shorten the step"
-	if e.Surface == Steam {
-		hint += "; steam under pressure is outside this program"
-	}
 	return cell.Error{At: e.At, Level: cell.Warning, Field: field, Typed: typed, Msg: msg, Hint: hint}
 }

@@ -237,8 +237,14 @@ func reach(p *Product) [3]float64 {
 
 func (c *checker) step(st *Step) {
 	if st.Stage == Freeze || st.Stage == Thaw {
+		low := c.product.StartC
+		for _, e := range exposures(c.product.Shape, st) {
+			for _, m := range e.Medium.C {
+				low = math.Min(low, m)
+			}
+		}
 		for _, f := range c.product.Foods() {
-			if !f.freezes() {
+			if !f.freezes() && !(f.FreezingC != nil && *f.FreezingC < low) { // a tin or a pack has none within reach
 				c.add(st.At, "Stage", st.Stage.Name, f.noIce(), iceNeeds)
 				break
 			}
@@ -289,11 +295,8 @@ func (c *checker) exposure(st *Step, e *Exposure, before float64) {
 		field = "Course"
 	}
 	c.air(st, e, high, before)
-	if e.Surface == BoilingWater {
-		if b := boilingC(st.AltitudeM); high > b+0.5 {
-			c.add(e.At, field, fmt.Sprintf("%g °C", high), fmt.Sprintf("water boils at %.1f °C at %g m above the sea", b, st.AltitudeM), "type the temperature of the water at your altitude (Plan item Altitude)")
-		}
-	}
+	c.water(st, e, field, low, high)
+	c.vapour(st, e)
 	c.cold(st, e, field, low)
 	if r := e.RadiatingC; r != nil && e.inAir() && *r < low {
 		c.cold(st, e, "Radiating temperature", *r)
@@ -304,6 +307,70 @@ func (c *checker) exposure(st *Step, e *Exposure, before float64) {
 }
 
 // radiation looks at Radiating temperature and Emissivity.
+// boilsWithinK is by how much a thermometer in boiling water or steam may be off, K.
+const boilsWithinK = 0.5
+
+// water looks for water and steam at temperatures that they do not have in the open.
+func (c *checker) water(st *Step, e *Exposure, field string, low, high float64) {
+	b := boilingC(st.AltitudeM)
+	typed := func(x float64) string { return fmt.Sprintf("%g °C", x) }
+	switch e.Surface {
+	case BoilingWater, WaterBath, StirredWater, Steam:
+		if high > b+boilsWithinK {
+			hint := "type the temperature of the water at your altitude (Plan item Altitude)"
+			if e.Surface == Steam {
+				hint = "steam under pressure is outside this program; if the air in an oven is meant, use moving air with its relative humidity"
+			}
+			c.add(e.At, field, typed(high), fmt.Sprintf("water boils at %.1f °C at %g m above the sea", b, st.AltitudeM), hint)
+		}
+	}
+	switch {
+	case e.Surface == BoilingWater && low < b-boilingLeastK:
+		c.add(e.At, field, typed(low), fmt.Sprintf("boiling water is at %.1f °C at %g m above the sea", b, st.AltitudeM), "use water bath or stirred water for water that does not boil")
+	case e.Surface == Steam && low < steamLeastC:
+		c.add(e.At, field, typed(low), fmt.Sprintf("steam heats; nothing below %g °C is taken as steam", float64(steamLeastC)), "use moving air or still air for air, water bath or stirred water for water")
+	}
+}
+
+// How far below the boiling point water at the boil may be typed, K, and how cold steam, °C: rounded figures and salted water, and steam
+// with much air in it (our own judgement).
+const (
+	boilingLeastK = 10
+	steamLeastC   = 50
+)
+
+// vapour looks for air that holds more vapour than the pressure around it allows.
+func (c *checker) vapour(st *Step, e *Exposure) {
+	if !e.inAir() && e.Surface != Steam {
+		return
+	}
+	total := pressurePa(st.AltitudeM)
+	tell := func(field, typed string, tC, rh float64) bool {
+		most := 100 * total / satPa(tC)
+		if rh <= most*1.03 {
+			return false
+		}
+		c.add(e.At, field, typed, fmt.Sprintf("at %g °C air can have at most %.3g %% relative humidity, when all of it is steam; %g %% would be vapour of %.2g bar", tC, most, rh, rh/100*satPa(tC)/1e5),
+			"what an oven shows as humidity is mostly a share of steam, not a relative humidity: measure with a wet-bulb thermometer, or leave it blank, and the slow side is taken")
+		return true
+	}
+	if e.RH != nil && e.Medium.RH == nil {
+		for _, x := range e.Medium.C {
+			if tell("Relative humidity", fmt.Sprintf("%g %%", *e.RH), x, *e.RH) {
+				return
+			}
+		}
+	}
+	for i, rh := range e.Medium.RH {
+		if i < len(e.Medium.C) && tell("Course", e.Medium.Name, e.Medium.C[i], rh) {
+			return
+		}
+	}
+}
+
+// hottestWallsC is how hot what the food sees may be, °C: heating elements and flames are hotter, but a food does not see them alone.
+const hottestWallsC = 400
+
 func (c *checker) radiation(e *Exposure) {
 	if e.RadiatingC == nil && e.Emissivity == nil {
 		return
@@ -327,6 +394,9 @@ func (c *checker) radiation(e *Exposure) {
 		c.add(e.At, field, typed, "an emissivity needs the temperature of what the food sees", "type the temperature of the walls or elements into Radiating temperature, or leave both out")
 	case !(*e.RadiatingC > -273.15) || math.IsInf(*e.RadiatingC, 0):
 		c.add(e.At, "Radiating temperature", fmt.Sprintf("%g °C", *e.RadiatingC), "is no temperature above absolute zero", "")
+	case *e.RadiatingC > hottestWallsC || *e.RadiatingC < coldestC:
+		c.add(e.At, "Radiating temperature", fmt.Sprintf("%g °C", *e.RadiatingC), fmt.Sprintf("the walls that a food sees lie between %d and %d °C", coldestC, hottestWallsC),
+			"type the mean temperature of the walls; an element that fills a part of the view counts by that part")
 	}
 }
 
@@ -341,6 +411,10 @@ func (c *checker) moisture(e *Exposure) {
 			c.add(e.At, "Course", e.Medium.Name, fmt.Sprintf("the course has a relative humidity of %g %%; it lies between 0 and 100 %%", rh), "")
 			break
 		}
+	}
+	if e.RH != nil && *e.RH > 0 && *e.RH < 1 {
+		c.found.Add(cell.Error{At: e.At, Level: cell.Warning, Field: "Relative humidity", Typed: fmt.Sprintf("%g %%", *e.RH),
+			Msg: fmt.Sprintf("is less than one per cent; if a share is meant it is %g %%", 100**e.RH), Hint: "type per cent"})
 	}
 	if e.Surface == Steam && e.FilmW != nil && (e.RH != nil || e.Medium.RH != nil) {
 		c.add(e.At, "Film coefficient", fmt.Sprintf("%g W/m²·K", *e.FilmW), "steam with a relative humidity has a film of its own, by the air in it, and a typed film stands for everything", "leave out one of the two")

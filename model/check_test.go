@@ -138,6 +138,25 @@ func TestCheckRefuses(t *testing.T) {
 			s[0].Medium = Course{Name: "oven log", TimesS: []float64{0, 3000}, C: []float64{90, 150}}
 		}, "Steps row 2", "Course", "before its step"},
 		{"hot air without dry or wet", func(_ *Product, s []Step) { s[0].Surface, s[0].AirMS = MovingAir, ptr(1.4) }, "Steps row 2", "Surface", "dry or wet"},
+		{"more vapour than air can hold", func(_ *Product, s []Step) {
+			s[0].Surface, s[0].FilmW, s[0].AirMS, s[0].Wet, s[0].RH, s[0].Medium.C = MovingAir, nil, ptr(2.0), ptr(true), ptr(50.0), []float64{150}
+		}, "Steps row 2", "Relative humidity", "at most 21.3 %"},
+		{"steam under pressure", func(_ *Product, s []Step) {
+			s[0].Surface, s[0].FilmW, s[0].Medium.C = Steam, nil, []float64{121}
+		}, "Steps row 2", "Temperature", "steam under pressure"},
+		{"steam on a mountain", func(_ *Product, s []Step) {
+			s[0].Surface, s[0].FilmW, s[0].Medium.C, s[0].AltitudeM = Steam, nil, []float64{100}, 2500
+		}, "Steps row 2", "Temperature", "boils at 91"},
+		{"cold steam", func(_ *Product, s []Step) {
+			s[1].Surface, s[1].FilmW, s[1].Medium.C = Steam, nil, []float64{2}
+		}, "Steps row 3", "Temperature", "steam heats"},
+		{"boiling water that does not boil", func(_ *Product, s []Step) {
+			s[1].Surface, s[1].FilmW, s[1].Medium.C = BoilingWater, nil, []float64{2}
+		}, "Steps row 3", "Temperature", "boiling water is at 100.0 °C"},
+		{"a water bath above boiling", func(_ *Product, s []Step) {
+			s[0].Surface, s[0].FilmW, s[0].Medium.C = WaterBath, nil, []float64{104}
+		}, "Steps row 2", "Temperature", "boils at 100.0"},
+		{"walls hotter than any oven", func(_ *Product, s []Step) { s[1].RadiatingC = ptr(700.0) }, "Steps row 3", "Radiating temperature", "between -80 and 400"},
 		{"boiling water on a mountain", func(_ *Product, s []Step) {
 			s[0].Surface, s[0].Medium.C, s[0].AltitudeM = BoilingWater, []float64{100}, 1900
 		}, "Steps row 2", "Temperature", "boils at 93"},

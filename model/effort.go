@@ -42,9 +42,9 @@ const marchGoalK = 0.019
 // are worth. What is left is stated.
 func (s *solver) mostTries() int {
 	switch {
-	case s.front && s.used > 1:
+	case s.used > 1 && (s.front || s.wets()):
 		return 0
-	case s.front || s.used > 1 && s.wets():
+	case s.front:
 		return 1
 	}
 	return 2

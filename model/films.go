@@ -81,6 +81,8 @@ func newAirFilm(moving bool, c *filmCase) *airFilm {
 		f.forced = &forcedPlate
 	case Sphere:
 		f.forced = &forcedSphere
+	case Spheroid: // between a sphere and a cylinder: in a stream a sphere's film is lower, in still air a cylinder's
+		f.forced = &forcedSphere
 	default:
 		f.forced = &forcedCylinder
 	}

@@ -236,9 +236,9 @@ func (s *skin) radiationW(outerC float64) float64 {
 }
 
 // drive is what drives vapour off the surface, kg a kg of dry air: above 0 it evaporates, below it condenses. The mass is
-// h/(cp Le^(2/3)) times it (Lewis' relation; Chilton & Colburn 1934). It is the difference of the humidity ratios, or Stefan's
-// ln((1 + ratio at the surface)/(1 + ratio of the air)), which is smaller where there is much vapour: whichever leaves the food colder
-// where it is to be heated, and whichever leaves it hotter where it is to be cooled.
+// h/(cp Le^(2/3)) times it, cp by the kg of dry air (Lewis' relation; Chilton & Colburn 1934). It is the difference of the humidity ratios
+// where the food is to be heated, and Stefan's logarithm of it, which is never more, where it is to be cooled: of two forms of the law the
+// one that makes the step slower.
 func (s *skin) drive(outerC float64, a *around) float64 {
 	activity := 1.0
 	if s.wet {
@@ -249,8 +249,8 @@ func (s *skin) drive(outerC float64, a *around) float64 {
 	if !s.wet && d >= 0 {
 		return 0
 	}
-	if l := math.Log1p(d / (1 + a.ratio)); (l > d) == s.slowHeats {
-		d = l
+	if !s.slowHeats {
+		d = (1 + a.ratio) * math.Log1p(d/(1+a.ratio))
 	}
 	return d
 }
