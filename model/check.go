@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"slowpoint/model/cell"
 )
@@ -243,8 +244,10 @@ func (c *checker) step(st *Step) {
 				low = math.Min(low, m)
 			}
 		}
-		for _, f := range c.product.Foods() {
-			if !f.freezes() && !(f.FreezingC != nil && *f.FreezingC < low) { // a tin or a pack has none within reach
+		foods := c.product.Foods()
+		any := slices.ContainsFunc(foods, (*Material).freezes)
+		for _, f := range foods {
+			if !f.freezes() && !(any && f.FreezingC != nil && *f.FreezingC < low) { // a tin or a pack around it has none within reach
 				c.add(st.At, "Stage", st.Stage.Name, f.noIce(), iceNeeds)
 				break
 			}
