@@ -298,12 +298,22 @@ func (r *runner) search(p *workbook.Product, now *report.Product, c *change, mov
 			bad = mid
 		}
 	}
+	first := good
 	for ; good <= c.most; good++ { // what is named is confirmed by the run that counts
 		if meets(good, model.Options{}) {
-			return good, all
+			break
 		}
 	}
-	return 0, false
+	if good > c.most {
+		return 0, false
+	}
+	every := all
+	if good == first { // a first look errs, mostly on the safe side
+		for good > 1 && meets(good-1, model.Options{}) {
+			good, every = good-1, all
+		}
+	}
+	return good, every
 }
 
 // keeps tells whether every limit that was met still is.
