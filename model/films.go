@@ -64,6 +64,11 @@ type airNode struct {
 // Air nodes: 4 K apart, so that a cubic through four of them is within 1e-7 of the formulas.
 const airNodesFromC, airNodeK, airNodes = -48, 4, 100
 
+// longSpheroid is the length by diameter from which a spheroid lies in a stream as a cylinder does: a measured roast of 2.5 cooled even
+// faster (McDonald, Sun & Kenny 2000, as in the measured cases). Rounder ones take the sphere's film, which is lower. The number between is
+// our own judgement.
+const longSpheroid = 1.5
+
 // newAirFilm takes the correlations that fit a case. Whether the air is too slow for the forced one is decided by the air alone, so that
 // the film does not jump while the surface warms.
 func newAirFilm(moving bool, c *filmCase) *airFilm {
@@ -76,12 +81,10 @@ func newAirFilm(moving bool, c *filmCase) *airFilm {
 		return f
 	}
 	f.airMS = c.airMS
-	switch c.shape {
-	case Slab, LayeredSlab:
+	switch {
+	case c.shape == Slab || c.shape == LayeredSlab:
 		f.forced = &forcedPlate
-	case Sphere:
-		f.forced = &forcedSphere
-	case Spheroid: // between a sphere and a cylinder: in a stream a sphere's film is lower, in still air a cylinder's
+	case c.shape == Sphere || c.shape == Spheroid && c.size.ThicknessM < longSpheroid*c.size.DiameterM:
 		f.forced = &forcedSphere
 	default:
 		f.forced = &forcedCylinder
