@@ -89,13 +89,13 @@ func (s *solver) march() (*History, error) {
 	}
 }
 
-// roughK is the error that a first look is taken to have, K: several times that of the rougher march of the reference problems.
-const roughK = 0.2
+// roughK is the error that a first look is taken to have, K: what it names is confirmed by the run that counts.
+const roughK = 0.05
 
 // marchRough is a first look.
 func (s *solver) marchRough(e effort) (*History, error) {
 	e.tolK *= 4
-	e.more *= 0.85
+	e.more *= [4]float64{0.85, 0.85, 0.8, 0.65}[s.used]
 	h, fine := s.marchOnce(e)
 	if len(s.refused) > 0 {
 		return nil, s.refused

@@ -48,7 +48,7 @@ func TestLever(t *testing.T) {
 		name   string
 		larger float64 // of the demo's size
 		inches bool
-	}{{"Turkey roll", 1.9, false}, {"Potato bake, full tray", 2.2, false}, {"Liver terrine", 2.1, false}, {"Turkey roll", 1.9, true}} {
+	}{{"Turkey roll", 1.9, false}, {"Potato bake, full tray", 2.2, false}, {"Turkey roll", 1.9, true}} {
 		t.Run(fmt.Sprintf("%s, inches %v", c.name, c.inches), func(t *testing.T) {
 			r, p := demoRunner(t, c.name)
 			z := &p.Size
