@@ -18,8 +18,6 @@ type body struct {
 	order []int // nodes from the centre outwards
 	rank  []int // by node: its place in order
 	buf   []float64
-	// pieces says that between nodes nothing is colder or hotter than both: the extremes stand at nodes.
-	pieces bool
 }
 
 func newBody(of body, nd *nodes) *body {
@@ -137,15 +135,16 @@ type extreme struct {
 const flatK = 1e-7
 
 // extremes finds the coldest and hottest place anywhere in the food: among the nodes first, then along the axes between them.
-func (b *body) extremes(s snapshot) (low, high extreme) {
-	if m, ok := s.(*modalShot); ok {
+func (b *body) extremes(shot snapshot) (low, high extreme) {
+	if m, ok := shot.(*modalShot); ok {
 		if layers, ok := m.f.fn.(*stack); ok {
 			return layers.extremes(b, m)
 		}
 	}
-	s.grid(b.buf)
+	shot.grid(b.buf)
 	lo, hi := b.lowest()
-	if b.pieces {
+	s, between := shot.(smooth)
+	if !between {
 		return extreme{b.buf[lo], b.node(lo)}, extreme{b.buf[hi], b.node(hi)}
 	}
 	reach := rivalShare * (b.buf[hi] - b.buf[lo])
@@ -265,7 +264,7 @@ func (b *body) nearest(level, sign float64) int {
 
 // polish moves from a node to the extreme beside it; sign 1 looks for the coldest, -1 for the hottest. It goes along the axes on which the
 // nodes leave it open, in turn, until nothing moves.
-func (b *body) polish(s snapshot, node int, sign float64) extreme {
+func (b *body) polish(s smooth, node int, sign float64) extreme {
 	stride, g := b.strides(), b.index(node)
 	var done [3]bool
 	open := 0

@@ -10,9 +10,9 @@ type effort struct {
 	ends  []Span  // rough: the steps as they ran in the first march, so that both change surroundings at the same instants
 }
 
-// rougher is the effort of the second march. A step's error in time is of third order, so that their sum goes with the tolerance to 2/3.
-// Control volumes, with half the nodes, and times that go with them make about four times the error; polynomials, two fewer on each half
-// axis, and times that go with them about six times.
+// rougher is the effort of the second march. Where time is of second order the error of a step is of third, so that their sum goes with the
+// tolerance to 2/3. Half the control volumes and six times the tolerance make about four times the error; two polynomials fewer on each half
+// axis make six to twenty times that of the space (as in fewerWorse).
 func (s *solver) rougher(e effort, ran []Span) effort {
 	if s.front && s.used > 1 {
 		return effort{more: e.more, tolK: e.tolK * 3, rough: true, fewer: 0.7, ends: ran}

@@ -27,10 +27,15 @@ type stepped interface {
 type snapshot interface {
 	// grid fills out with the temperatures at all nodes, the last axis fastest.
 	grid(out []float64)
+	mean() float64
+}
+
+// smooth is a snapshot with polynomials between its nodes. Of others nothing between two nodes is colder or hotter than both.
+type smooth interface {
+	snapshot
 	// slice gives the coefficients of the polynomials along one axis through a place; node tells the nodes that the place lies on, -1 where
 	// it lies between.
 	slice(axis int, x coord, node [3]int, out []float64)
-	mean() float64
 }
 
 // coord is a place in the body's own coordinates.

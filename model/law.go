@@ -12,7 +12,7 @@ import (
 // Above 100 °C a food has the properties that it has there, since it holds no water above it (typed tables: above their last row).
 type law struct {
 	zeroC      float64 // temperature at which h and u are 0, °C
-	warm, cold piece   // h ≥ 0 and h < 0; cold has no rows where the food is not calculated below zeroC
+	warm, cold piece   // h ≥ 0 and h < 0
 	lowC       float64 // coldest temperature that the tables know, °C
 }
 
@@ -143,10 +143,9 @@ func (l *law) row(h float64) (*lawRow, float64, float64) {
 	if h < 0 {
 		p = &l.cold
 	}
-	x := h * p.per
-	i := int(x)
-	if i >= len(p.rows) {
-		i = len(p.rows) - 1
+	x, i := h*p.per, len(p.rows)-1
+	if x < float64(i) { // not where a try has run off to infinity or to no number: its error shows that, and it is thrown away
+		i = int(x)
 	}
 	return &p.rows[i], x - float64(i), p.per
 }

@@ -30,8 +30,8 @@ type marcher interface {
 	keepsHeat() []*law
 	// touches gives the nodes that a skin lies on.
 	touches(k *skin) []int
-	// save and restore keep a copy of the state.
-	save()
+	// save puts a copy of the state aside, tau s into the step; restore takes it back.
+	save(tau float64)
 	restore()
 }
 
@@ -175,6 +175,15 @@ func (s *solver) outside(low, high float64) {
 // mostKept is how many numbers a track may keep: 300 MB.
 const mostKept = 4e7
 
+// leastStepS is the shortest step of a march, s: one that cannot be solved is not made shorter than this.
+const leastStepS = 1e-7
+
+// tooFast refuses a step that cannot be marched.
+func (s *solver) tooFast(st *Step) {
+	s.refused.Add(cell.Error{At: st.At, Field: "Step", Typed: st.Name, Msg: "changes so fast at the surface that it takes more steps than can be kept",
+		Hint: "look at the temperatures and the sizes of the product, or use film with a coefficient that stands for everything"})
+}
+
 // marchStep runs one step into the track.
 func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 	st := span.Step
@@ -243,12 +252,16 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 			use = rest / 2
 		}
 		if until != nil {
-			f.state.save()
+			f.state.save(tau)
 		}
 		err := f.state.try(tau, use)
-		if err > 2*tolK && use > 1e-7 {
+		if !(err <= 2*tolK) && use > leastStepS {
 			d = use * max(0.1, min(0.5, 0.9*math.Cbrt(tolK/err)))
 			continue
+		}
+		if math.IsInf(err, 1) {
+			s.tooFast(st)
+			return cs
 		}
 		from, kept := tau, len(f.track.times)
 		if tau += use; use == end-from {
@@ -256,8 +269,7 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 		}
 		f.state.accept(f.track, span.StartS+tau)
 		if e.kept > 0 && len(f.track.data) > e.kept {
-			s.refused.Add(cell.Error{At: st.At, Field: "Step", Typed: st.Name, Msg: "changes so fast at the surface that it takes more steps than can be kept",
-				Hint: "look at the temperatures and the sizes of the product, or use film with a coefficient that stands for everything"})
+			s.tooFast(st)
 			return cs
 		}
 		if grow := max(0.2, min(2.5, 0.9*math.Cbrt(tolK/err))); grow >= 1 {
@@ -266,8 +278,11 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 			d = use * grow
 		}
 		if until != nil && f.missing(span.StartS+tau, *until, st.Stage.Heats) <= 0 {
-			cs.durS = f.arrive(*until, st.Stage.Heats, span.StartS, from, kept)
-			reached := true
+			var reached bool
+			if cs.durS, reached = f.arrive(*until, st.Stage.Heats, span.StartS, from, kept); !reached {
+				s.tooFast(st)
+				return cs
+			}
 			span.Reached = &reached
 			return cs
 		}
@@ -315,8 +330,9 @@ func (f *marched) missing(t, goal float64, heats bool) float64 {
 }
 
 // arrive finds when, in the last step of the march, the slowest place reached a temperature, and steps there again; from is where that step
-// began, s into the chain's step that began at start, when the track had kept instants.
-func (f *marched) arrive(goal float64, heats bool, start, from float64, kept int) float64 {
+// began, s into the chain's step that began at start, when the track had kept instants. It gives the length of the chain's step, s, and whether
+// it could be stepped.
+func (f *marched) arrive(goal float64, heats bool, start, from float64, kept int) (durS float64, ok bool) {
 	k := f.track
 	lo, hi := start+from, k.times[len(k.times)-1]
 	before := f.missing(lo, goal, heats)
@@ -331,11 +347,13 @@ func (f *marched) arrive(goal float64, heats bool, start, from float64, kept int
 		hi = max(hi, start+1e-3) // a step of no length cannot be drawn or judged
 		k.cut(kept)
 		f.state.restore()
-		f.state.try(from, hi-start-from)
+		if math.IsInf(f.state.try(from, hi-start-from), 1) {
+			return hi - start, false
+		}
 		f.state.accept(k, hi)
 		left := f.missing(hi, goal, heats)
 		if math.Abs(left) < 1e-6 || try == 4 || before <= left {
-			return hi - start
+			return hi - start, true
 		}
 		hi += left * (hi - start - from) / (before - left)
 	}

@@ -16,7 +16,8 @@ func (s *solver) newMarched(e effort) *marched {
 	}
 	f.track.n = len(f.mesh.weights())
 	f.track.laws = f.state.keepsHeat()
-	f.now = marchedShot{f, make([]float64, f.track.n)}
+	f.now = make([]float64, f.track.n)
+	f.shot = f.mesh.shot(f, f.now)
 	return f
 }
 
@@ -39,7 +40,7 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 	for i, x := range g.x {
 		nd.x[0][i] = x / g.r
 	}
-	f.body = newBody(body{kinds: kinds, radii: s.radii, pieces: true}, nd)
+	f.body = newBody(body{kinds: kinds, radii: s.radii}, nd)
 }
 
 // laySpace lays out a body of two or three axes, or of one without a front.
@@ -67,21 +68,12 @@ func (s *solver) laySpace(f *marched, l *law, e effort) {
 	if !front && (s.used == 1 || !s.wets()) {
 		f.state = newModesMarch(march, e.tolK/4)
 	}
-	f.body = newBody(body{kinds: s.kinds, radii: s.radii, by: by, pieces: front}, nd)
+	f.body = newBody(body{kinds: s.kinds, radii: s.radii, by: by}, nd)
 }
 
 // marchSettleS is the longest time after a change of surroundings from which the error is held where polynomials in two or three
 // directions are marched, s: the first minutes of a thick food would need many times the polynomials of all that follows.
 const marchSettleS = 300
-
-// marchSettle is that time.
-func (s *solver) marchSettle(alpha float64) float64 {
-	settle := float64(marchSettleS)
-	for a := 0; a < s.used; a++ {
-		settle = min(settle, settleFo*s.radii[a]*s.radii[a]/alpha)
-	}
-	return settle
-}
 
 // crowding is how thin a layer at a far face is taken to be, by the thinnest half axis.
 const crowding = 1.5

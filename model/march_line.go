@@ -120,7 +120,7 @@ type lineMarch struct {
 	kept         []float64
 
 	h, rate              []float64 // heat contents, J/m³, and their slopes, J/(m³·s), now
-	h1, h2, guess        []float64
+	h1, h2               []float64
 	b, f0, f1, f2        []float64  // W/m²
 	temp, dt, u, du      []float64  // of the last look: temperature, its slope by h, Kirchhoff integral, its slope by h
 	low, diag, up, delta []float64  // the three diagonals and the right side
@@ -133,7 +133,7 @@ type lineMarch struct {
 func newLineMarch(g *lineGrid, laws []*law) *lineMarch {
 	m := &lineMarch{lineGrid: g, laws: laws}
 	n := len(g.x)
-	for _, s := range []*[]float64{&m.h, &m.rate, &m.h1, &m.h2, &m.guess, &m.b, &m.f0, &m.f1, &m.f2, &m.temp, &m.dt, &m.u, &m.du, &m.low, &m.diag, &m.up, &m.delta} {
+	for _, s := range []*[]float64{&m.h, &m.rate, &m.h1, &m.h2, &m.b, &m.f0, &m.f1, &m.f2, &m.temp, &m.dt, &m.u, &m.du, &m.low, &m.diag, &m.up, &m.delta} {
 		*s = make([]float64, n)
 	}
 	return m
@@ -269,7 +269,9 @@ func (m *lineMarch) solve(h, b []float64, a, tau float64) bool {
 			h[i] = was + d
 			passed = passed || (was < 0) != (h[i] < 0)
 			if d = math.Abs(d * m.du[i]); !(d <= worst) {
-				worst = d
+				if worst = d; math.IsNaN(d) {
+					return false
+				}
 			}
 		}
 		worst /= unfrozenK
@@ -277,9 +279,6 @@ func (m *lineMarch) solve(h, b []float64, a, tau float64) bool {
 		m.qs[1] += slope[1] * m.delta[n-1]
 		if worst < newtonK || worst < newtonSmoothK && !passed {
 			return true
-		}
-		if math.IsNaN(worst) {
-			return false
 		}
 	}
 	return false
@@ -362,8 +361,10 @@ func (m *lineMarch) try(tau, d float64) float64 {
 	m.back(m.delta)
 	worst := 0.0
 	for i, e := range m.delta {
-		if e = math.Abs(e) * max(m.laws[m.food[i]].thin(m.h2[i]), heatCounts); e > worst {
-			worst = e
+		if e = math.Abs(e) * max(m.laws[m.food[i]].thin(m.h2[i]), heatCounts); !(e <= worst) {
+			if worst = e; math.IsNaN(e) {
+				return math.Inf(1)
+			}
 		}
 	}
 	return worst
@@ -429,7 +430,7 @@ func (m *lineMarch) span() (low, high float64) {
 	return low, high
 }
 
-func (m *lineMarch) save() {
+func (m *lineMarch) save(float64) {
 	m.kept = append(append(m.kept[:0], m.h...), m.rate...)
 }
 

@@ -3,9 +3,11 @@ package model
 import "math"
 
 // modesMarch steps a smooth field in the modes of a linear problem close to its own: constant properties in the middle of those that occur,
-// and films as steep as the steepest. What they decay by is exact in time; only what is left over of the properties and the surfaces is
-// stepped, by the second-order exponential scheme ETD2RK (Cox & Matthews 2002, J. Comput. Phys. 176:430-455). The unknown is the heat
-// content over the middle heat capacity, a temperature in all but name, so that heat is conserved whatever the steps.
+// and films as steep as the surfaces are now. What they decay by is exact in time; only what is left over of the properties and the surfaces
+// is stepped: by the second-order exponential scheme ETD2RK (Cox & Matthews 2002, J. Comput. Phys. 176:430-455), corrected once with the
+// parabola in time through what was left over at the start of the step before, at the start and at the end, whose correction is the estimate
+// of the error. The unknown is the heat content over the middle heat capacity, a temperature in all but name, so that heat is conserved
+// whatever the steps.
 type modesMarch struct {
 	*spaceMarch
 	mem slab // for what lasts a step of the chain
@@ -18,8 +20,8 @@ type modesMarch struct {
 	a, na, next, n1 []float64     // first look at the end of a step, and the end
 	e, p1, p2, p3   []float64     // by mode, for a step: see phis
 	before, bend    []float64     // what was left over at the start of the step before, and half its second slope in time, K/s³
-	keptS           float64
-	lastS           float64 // length of the step before, s; 0: there is none in these modes
+	savedAt         float64       // s into the step
+	lastS           float64       // length of the step before, s; 0: there is none in these modes
 	x, y, z, nodal  []float64
 	length, tau     float64     // of the last try, and its end from the start of the step, s
 	reacts          bool        // a film is not constant
@@ -417,16 +419,17 @@ func (m *modesMarch) span() (low, high float64) {
 	return m.law.temperature(low * m.rhoC), m.law.temperature(high * m.rhoC)
 }
 
-func (m *modesMarch) save() {
-	m.kept = append(append(append(m.kept[:0], m.c...), m.n0...), m.before...)
-	m.keptS = m.lastS
+// save puts heat contents aside and not modes: a surface may lead to those of another linear problem before they are wanted again.
+func (m *modesMarch) save(tau float64) {
+	m.leave()
+	m.spaceMarch.save(tau)
+	m.savedAt = tau
 }
 
 func (m *modesMarch) restore() {
-	copy(m.c, m.kept[:m.n])
-	copy(m.n0, m.kept[m.n:2*m.n])
-	copy(m.before, m.kept[2*m.n:])
-	m.lastS = m.keptS
+	m.spaceMarch.restore()
+	m.linearize(m.savedAt)
+	m.begin(m.savedAt)
 }
 
 func (m *modesMarch) keepsHeat() []*law { return nil }

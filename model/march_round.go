@@ -11,7 +11,7 @@ type roundMesh struct {
 	rr, rm, mm []float64 // by node: share of the volume times the squared gradients of rho, their product, of mu, 1/m²
 	face       []float64 // by node on the surface: what a flow adds to the rate, 1/m
 	fast       float64   // largest rate of decay, 1/m²
-	ur, um, v  []float64
+	ur, um     []float64
 }
 
 // newRoundMesh makes a mesh of nr × nm nodes.
@@ -39,7 +39,7 @@ func newRoundMesh(ball *spheroidMap, nr, nm int) *roundMesh {
 	for _, c := range mu.x { // area element over volume, by the share of the node
 		m.face = append(m.face, ball.surfaceShare(c)/rho.w[nr-1])
 	}
-	m.ur, m.um, m.v = make([]float64, m.n), make([]float64, m.n), make([]float64, m.n)
+	m.ur, m.um = make([]float64, m.n), make([]float64, m.n)
 	m.fast = m.fastest()
 	return m
 }

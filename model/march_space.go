@@ -326,8 +326,8 @@ func (m *spaceMarch) span() (low, high float64) {
 	return m.law.temperature(low), m.law.temperature(high)
 }
 
-func (m *spaceMarch) save()    { m.kept = append(append(m.kept[:0], m.h...), m.f0...) }
-func (m *spaceMarch) restore() { copy(m.h, m.kept[:m.n]); copy(m.f0, m.kept[m.n:]) }
+func (m *spaceMarch) save(float64) { m.kept = append(append(m.kept[:0], m.h...), m.f0...) }
+func (m *spaceMarch) restore()     { copy(m.h, m.kept[:m.n]); copy(m.f0, m.kept[m.n:]) }
 
 // fastest gives the largest diffusivity, m²/s, and the largest slope of temperature by heat content, m³·K/J, between two temperatures.
 func (l *law) fastest(low, high float64) (spread, thin float64) {
@@ -495,7 +495,15 @@ func (m *spaceMesh) fill(c, out []float64) {
 	}
 }
 
-func (m *spaceMesh) slice(c []float64, axis int, x coord, _ [3]int, out []float64) {
+func (m *spaceMesh) shot(f *marched, c []float64) snapshot {
+	if m.axes[0].poly == nil {
+		return &marchedShot{f, c}
+	}
+	return &smoothShot{marchedShot{f, c}, m}
+}
+
+// slice gives the coefficients of the polynomials along an axis through a place from the temperatures of the nodes.
+func (m *spaceMesh) slice(c []float64, axis int, x coord, out []float64) {
 	var v [3][maxDegrees]float64
 	for a, ax := range m.axes {
 		if a != axis {

@@ -8,6 +8,8 @@ import (
 	"slices"
 	"strings"
 	"testing"
+
+	"slowpoint/model/cell"
 )
 
 // problem is a reference problem that is marched: its inputs stand in testdata/published/solutions, with how it was solved twice.
@@ -161,5 +163,80 @@ func TestMarchedReferenceProblems(t *testing.T) {
 				t.Errorf("stated error %.4f K, promised %.4f K", h.ErrorK, p.allowK)
 			}
 		})
+	}
+}
+
+// A state that was put aside comes back as it was, also where the surface has led the march to another linear problem since.
+func TestMarchRestoresItsState(t *testing.T) {
+	food := &Material{Name: "test food", Source: "input of the test", Table: true, LowC: -30, HighC: 260, Waterless: true, Props: func(c float64) Properties {
+		return Properties{0.44 + 0.0011*c, 1030, 3400 + 1.2*c}
+	}}
+	walls := 340.0
+	oven := Exposure{Surface: StillAir, Medium: Course{TimesS: []float64{0}, C: []float64{240}}, RadiatingC: &walls, Wet: ptr(false)}
+	for _, shape := range []*Shape{Slab, Brick, Spheroid, LayeredSlab} {
+		t.Run(shape.Name, func(t *testing.T) {
+			p := Product{Name: "P", Shape: shape, Food: food, StartC: 6, Size: Size{ThicknessM: 0.061, WidthM: 0.083, LengthM: 0.12, DiameterM: 0.072}}
+			if shape == LayeredSlab {
+				p.Food, p.Layers = nil, []Layer{{Food: food, ThicknessM: 0.02, BelowM2KW: 0.004}, {Food: food, ThicknessM: 0.041}}
+			}
+			steps := []Step{{Name: "roast", Stage: Cook, DurationS: 5000, Exposure: oven}}
+			s := &solver{product: &p, steps: steps, options: Options{ConductivityFactor: 1}, tmp: scratches.Get().(*scratch)}
+			defer scratches.Put(s.tmp)
+			s.layOut()
+			e, _ := s.firstEffort()
+			f := s.newMarched(e)
+			k := s.skinOf(&steps[0].Exposure, nil, &steps[0])
+			f.state.surround(func(*Face) *skin { return k })
+			f.state.begin(0)
+			f.state.keep(f.track, 0)
+			tau := 0.0
+			step := func(to float64) {
+				for d := 1.0; tau < to; d *= 2 {
+					for f.state.try(tau, d) > 0.1 {
+						d /= 4
+					}
+					tau += d
+					f.state.accept(f.track, tau)
+				}
+			}
+			step(60)
+			f.state.save(tau)
+			want, at := make([]float64, f.track.n), tau
+			f.track.all(f.track.find(tau), want)
+			step(1200) // the walls heat the surface more and more steeply
+			f.state.restore()
+			again := &track{n: f.track.n, laws: f.track.laws}
+			f.state.keep(again, at)
+			f.state.keep(again, at+1)
+			got := make([]float64, f.track.n)
+			again.all(again.find(at), got)
+			for i := range got {
+				if math.Abs(got[i]-want[i]) > 1e-6 {
+					t.Fatalf("node %d comes back at %.6f °C, was %.6f °C", i, got[i], want[i])
+				}
+			}
+		})
+	}
+}
+
+// A step that cannot be solved however short it is is refused, and never taken as it came out.
+func TestMarchThatCannotGoOnIsRefused(t *testing.T) {
+	e := filmTo(25, 120)
+	e.At = cell.Ref{Sheet: "Steps", Row: 3}
+	e.Surface = &Surface{Name: "test surface", law: func(c, _ float64) (float64, float64) {
+		if c > 50 {
+			return math.NaN(), math.NaN()
+		}
+		return 25 * (120 - c), -25
+	}}
+	for _, f := range []*Material{freezingFood(), {Name: "test food", Source: "input of the test", Props: func(float64) Properties { return Properties{0.48, 1060, 3600} }}} {
+		p := Product{Name: "P", Shape: Slab, Food: f, StartC: -15, Size: Size{ThicknessM: 0.03}}
+		if f.FreezingC == nil {
+			p.StartC = 7
+		}
+		_, err := Solve(p, []Step{{Name: "roast", Stage: Cook, DurationS: 3000, Exposure: e}}, Options{})
+		if err == nil || !strings.Contains(err.Error(), "changes so fast") || !strings.Contains(err.Error(), "Steps") {
+			t.Errorf("start %g °C: %v", p.StartC, err)
+		}
 	}
 }

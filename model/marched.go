@@ -8,7 +8,8 @@ type marched struct {
 	state marcher
 	track *track
 	mesh  mesh
-	now   marchedShot
+	now   []float64 // temperatures of the nodes at the instant that was asked for last
+	shot  snapshot  // of them
 	// bounds are what no place can pass, by span, °C: the start and what the surfaces so far are in balance with.
 	bounds [][2]float64
 }
@@ -25,46 +26,41 @@ type mesh interface {
 	neighbours(j int, do func(k int))
 	// fill gives the temperatures at the nodes of the body, which may be more than those of the march.
 	fill(nodes, out []float64)
-	// slice gives the coefficients of the polynomials along an axis through a place, where the mesh has polynomials.
-	slice(nodes []float64, axis int, x coord, node [3]int, out []float64)
+	// shot is a snapshot of the temperatures c of the nodes of f, which lie in this mesh.
+	shot(f *marched, c []float64) snapshot
 	// words for the report
 	String() string
 }
 
 func (f *marched) course(x coord, times, out []float64) {
-	if m, ok := f.mesh.(weighted); ok && f.track.laws == nil && f.state.keepsHeat() == nil {
+	if m, ok := f.mesh.(weighted); ok && f.track.laws == nil {
 		w := m.placeWeights(x)
 		for i, t := range times {
 			out[i] = f.track.sum(f.track.find(t), w)
 		}
 		return
 	}
-	now := f.now.c
 	for i, t := range times {
-		f.track.all(f.track.find(t), now)
-		out[i] = f.mesh.at(x, now)
+		f.track.all(f.track.find(t), f.now)
+		out[i] = f.mesh.at(x, f.now)
 	}
 }
 
 // weighted is a mesh in which the temperature of a place is a sum over the nodes.
 type weighted interface{ placeWeights(x coord) []float64 }
 
-// marchedShot is a marched field at one instant.
+func (f *marched) at(t float64) snapshot {
+	f.track.all(f.track.find(t), f.now)
+	return f.shot
+}
+
+// marchedShot is a marched field at one instant. Between its nodes nothing is colder or hotter than both.
 type marchedShot struct {
 	f *marched
 	c []float64
 }
 
-func (f *marched) at(t float64) snapshot {
-	f.track.all(f.track.find(t), f.now.c)
-	return &f.now
-}
-
 func (s *marchedShot) grid(out []float64) { s.f.mesh.fill(s.c, out) }
-
-func (s *marchedShot) slice(axis int, x coord, node [3]int, out []float64) {
-	s.f.mesh.slice(s.c, axis, x, node, out)
-}
 
 func (s *marchedShot) mean() float64 {
 	sum := 0.0
@@ -72,6 +68,16 @@ func (s *marchedShot) mean() float64 {
 		sum += w * s.c[i]
 	}
 	return sum
+}
+
+// smoothShot is one with polynomials through its nodes.
+type smoothShot struct {
+	marchedShot
+	mesh *spaceMesh
+}
+
+func (s *smoothShot) slice(axis int, x coord, _ [3]int, out []float64) {
+	s.mesh.slice(s.c, axis, x, out)
 }
 
 func (f *marched) method() string {

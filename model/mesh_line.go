@@ -119,9 +119,7 @@ func (m *lineMesh) onto(other mesh) func(here, there []float64) {
 
 func (m *lineMesh) fill(nodes, out []float64) { copy(out, nodes) }
 
-func (m *lineMesh) slice([]float64, int, coord, [3]int, []float64) {
-	panic("model: control volumes have no polynomials")
-}
+func (m *lineMesh) shot(f *marched, c []float64) snapshot { return &marchedShot{f, c} }
 
 func (m *lineMesh) neighbours(j int, do func(k int)) {
 	for _, k := range [2]int{j - 1, j + 1} {

@@ -128,11 +128,11 @@ func (s *solver) layOut() {
 	alpha := q.KWmK / (q.RhoKgM3 * q.CJkgK)
 	if s.settle = s.options.ErrorFromS; s.settle == 0 {
 		s.settle = settleS
+		if marches && s.polynomial() && s.used > 1 {
+			s.settle = marchSettleS
+		}
 		for a := 0; a < s.used; a++ {
 			s.settle = min(s.settle, settleFo*s.radii[a]*s.radii[a]/alpha)
-		}
-		if marches && s.polynomial() && s.used > 1 {
-			s.settle = s.marchSettle(alpha)
 		}
 	}
 	for i := range s.steps {
