@@ -169,7 +169,7 @@ func (c *checker) foodAt(f *Material, row cell.Ref) {
 	case f.Flow == FlowsThick && p.Shape == LayeredSlab: // of other shapes a second run takes it as well mixed
 		c.add(at, field, typed(f.Flow), says+"may mix by itself while it is hot; conduction alone does not describe that, and a layer cannot be taken as well mixed", instead)
 	}
-	if f.freezes() {
+	if f.freezes() || f.Waterless {
 		return
 	}
 	if f.FreezingC != nil && p.StartC < *f.FreezingC || f.FreezingC == nil && p.StartC < unfrozenC {
@@ -247,7 +247,7 @@ func (c *checker) step(st *Step) {
 		foods := c.product.Foods()
 		any := slices.ContainsFunc(foods, (*Material).freezes)
 		for _, f := range foods {
-			if !f.freezes() && !(any && f.FreezingC != nil && *f.FreezingC < low) { // a tin or a pack around it has none within reach
+			if !f.freezes() && !f.Waterless && !(any && f.FreezingC != nil && *f.FreezingC < low) { // a tin or a pack around it has none within reach
 				c.add(st.At, "Stage", st.Stage.Name, f.noIce(), iceNeeds)
 				break
 			}
@@ -496,7 +496,7 @@ func (c *checker) air(st *Step, e *Exposure, high, before float64) {
 // wetOrDry refuses air that heats the food where neither was said.
 func wetOrDry(found *cell.Errors, e *Exposure) {
 	if e.Wet == nil {
-		found.Add(cell.Error{At: e.At, Field: "Surface", Msg: "air that is warmer than the food needs dry or wet here: a wet surface heats much more slowly",
+		found.Add(cell.Error{At: e.At, Field: "Surface", Msg: "air or walls that are warmer than the food need dry or wet here: a wet surface heats much more slowly",
 			Hint: "type wet for moist food that lies open, and dry only for food that is wrapped, lidded or truly dry"})
 	}
 }
@@ -514,6 +514,9 @@ func (c *checker) cold(st *Step, e *Exposure, field string, low float64) {
 
 // coldFor does so for one food.
 func (c *checker) coldFor(f *Material, st *Step, e *Exposure, field string, low float64) {
+	if f.Waterless {
+		return
+	}
 	typed := func() string { return fmt.Sprintf("%g °C", low) }
 	if f.FreezingC == nil {
 		if low < unfrozenC {
@@ -539,6 +542,9 @@ func (m *Material) freezes() bool { return m.FreezingC != nil && m.EnthalpyJkg !
 func (m *Material) noIce() string {
 	if m.FreezingC == nil {
 		return fmt.Sprintf("the freezing point of %s is not known, so its freezing and melting cannot be calculated", m.Name)
+	}
+	if m.Composed {
+		return fmt.Sprintf("the proteins of %s hold all of its water by its composition, so that no ice would form, which is not calculated", m.Name)
 	}
 	return fmt.Sprintf("how much ice forms in %s is not known from typed properties, so its freezing and melting cannot be calculated", m.Name)
 }

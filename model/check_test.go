@@ -451,3 +451,37 @@ func TestCheckWarnsOfAStirredSolid(t *testing.T) {
 		})
 	}
 }
+
+// A step that ends at a temperature where the food is already does nothing, and that is said.
+func TestStepThatIsOverAtOnceIsTold(t *testing.T) {
+	for _, composed := range []bool{false, true} {
+		p, steps := plain()
+		p.Food.Composed = composed
+		steps[0].UntilC = ptr(p.StartC - 2)
+		h, err := Solve(p, steps, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if len(h.Warnings) != 1 || h.Warnings[0].At != steps[0].At || h.Warnings[0].Field != "Until slowest point reaches" || !strings.Contains(h.Warnings[0].Msg, "coldest place") {
+			t.Errorf("%v", h.Warnings)
+		}
+		steps[0].UntilC = ptr(p.StartC + 2)
+		if h, err = Solve(p, steps, Options{}); err != nil || len(h.Warnings) > 0 {
+			t.Errorf("%v %v", h.Warnings, err)
+		}
+	}
+}
+
+// Fat holds nothing that freezes: it may be as cold as it likes.
+func TestWaterlessFoodDoesNotFreeze(t *testing.T) {
+	p, steps := plain()
+	p.Food.Waterless, p.StartC = true, -15
+	steps[1].Medium.C, steps[1].Stage = []float64{-22}, Freeze
+	if h, err := Solve(p, steps, Options{}); err != nil || h.Bound != "" {
+		t.Errorf("%v", err)
+	}
+	p.Food.Waterless = false
+	if _, err := Solve(p, steps, Options{}); err == nil {
+		t.Error("a food with water and no freezing point is frozen")
+	}
+}

@@ -76,7 +76,7 @@ func (s *solver) march() (*History, error) {
 		s.chain, s.main = chain, fine
 		h.ErrorK = max(1e-5, fine.differs(h, rough)/worse)
 		if h.ErrorK <= marchGoalK || tries == s.mostTries() {
-			s.boiling(h)
+			s.warn(h)
 			return h, nil
 		}
 		by := h.ErrorK / marchGoalK
@@ -101,7 +101,7 @@ func (s *solver) marchRough(e effort) (*History, error) {
 		return nil, s.refused
 	}
 	s.main, h.ErrorK = fine, roughK
-	s.boiling(h)
+	s.warn(h)
 	return h, nil
 }
 
@@ -344,7 +344,7 @@ func (f *marched) arrive(goal float64, heats bool, start, from float64, kept int
 		}
 	}
 	for try := 0; ; try++ { // a step to there lands a little off the cubic between the two instants
-		hi = max(hi, start+1e-3) // a step of no length cannot be drawn or judged
+		hi = max(hi, start+shortestS)
 		k.cut(kept)
 		f.state.restore()
 		if math.IsInf(f.state.try(from, hi-start-from), 1) {

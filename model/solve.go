@@ -45,7 +45,7 @@ func Solve(p Product, steps []Step, o Options) (*History, error) {
 		}
 		s.estimate(h, more)
 		if h.ErrorK <= s.goal() || s.full(more) {
-			s.boiling(h)
+			s.warn(h)
 			return h, nil
 		}
 	}
@@ -581,6 +581,28 @@ func sameExposure(a, b *Exposure) bool {
 		sameCourse(&a.Medium, &b.Medium)
 }
 
+// shortestS is how long a step lasts that ends at a temperature where the food is there already, s: one of no length cannot be drawn or
+// judged.
+const shortestS = 1e-3
+
+// warn adds what only the calculation shows.
+func (s *solver) warn(h *History) {
+	s.boiling(h)
+	for i := range h.Spans {
+		sp := &h.Spans[i]
+		if sp.Reached == nil || !*sp.Reached || sp.EndS-sp.StartS > 2*shortestS {
+			continue
+		}
+		which := "hottest"
+		if sp.Step.Stage.Heats {
+			which = "coldest"
+		}
+		h.Warnings.Add(cell.Error{At: sp.Step.At, Level: cell.Warning, Field: "Until slowest point reaches", Typed: fmt.Sprintf("%g °C", *sp.Step.UntilC),
+			Msg:  fmt.Sprintf("is where the food is already when the step %s begins, even its %s place, so that the step ends at once", sp.Step.Name, which),
+			Hint: "look at the temperature and at the stage: cook, reheat, thaw and hold hot wait for the coldest place, all others for the hottest"})
+	}
+}
+
 // until finds when the slowest place reaches a temperature between from and to: the length of the step.
 func (s *solver) until(h *History, from, to, goal float64, heats bool) (durS float64, reached bool) {
 	s.hulls(h)
@@ -605,10 +627,7 @@ func (s *solver) until(h *History, from, to, goal float64, heats bool) (durS flo
 				hi = mid
 			}
 		}
-		if hi-from < 1e-3 { // already there: a step of no length cannot be drawn or judged
-			hi = from + 1e-3
-		}
-		return hi - from, true
+		return max(hi-from, shortestS), true
 	}
 	return to - from, false
 }

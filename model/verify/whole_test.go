@@ -100,17 +100,7 @@ func TestRoundSpheroidIsASphere(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		a, b := ball.Sample(300), sphere.Sample(300)
-		for i, at := range a.TimesS {
-			if soon(ball, at) {
-				continue
-			}
-			same(t, "centre", at, a.Points[0][i], b.Points[0][i], ball, sphere)
-			same(t, "mean", at, a.Mean[i], b.Mean[i], ball, sphere)
-			same(t, "coldest", at, a.Coldest[i], b.Coldest[i], ball, sphere)
-			same(t, "hottest", at, a.Hottest[i], b.Hottest[i], ball, sphere)
-			same(t, "aside", at, ball.At(model.Place{UpM: 0.48 * r, AcrossM: 0.64 * r}, at), sphere.At(model.Place{UpM: 0.8 * r}, at), ball, sphere)
-		}
+		sameCourses(t, ball, sphere, [2]model.Place{{UpM: 0.48 * r, AcrossM: 0.64 * r}, {UpM: 0.8 * r}})
 	})
 }
 
@@ -124,10 +114,24 @@ func soon(h *model.History, at float64) bool {
 	return false
 }
 
-// same holds two histories to each other by what they say of their errors.
-func same(t *rapid.T, what string, at, a, b float64, h, o *model.History) {
-	if math.Abs(a-b) > 2*(h.ErrorK+o.ErrorK)+0.002 {
-		t.Fatalf("%s at %g s: %.4f and %.4f °C, and the stated errors are %.4f and %.4f K", what, at, a, b, h.ErrorK, o.ErrorK)
+// sameCourses holds two histories to each other by what they say of their errors: centre, mean, coldest, hottest, and a place of each.
+func sameCourses(t *rapid.T, h, o *model.History, places [2]model.Place) {
+	a, b := h.Sample(300), o.Sample(300)
+	for i, at := range a.TimesS {
+		if soon(h, at) {
+			continue
+		}
+		for what, c := range map[string][2]float64{
+			"centre":  {a.Points[0][i], b.Points[0][i]},
+			"mean":    {a.Mean[i], b.Mean[i]},
+			"coldest": {a.Coldest[i], b.Coldest[i]},
+			"hottest": {a.Hottest[i], b.Hottest[i]},
+			"place":   {h.At(places[0], at), o.At(places[1], at)},
+		} {
+			if math.Abs(c[0]-c[1]) > 2*(h.ErrorK+o.ErrorK)+0.002 {
+				t.Fatalf("%s at %g s: %.4f and %.4f °C, and the stated errors are %.4f and %.4f K", what, at, c[0], c[1], h.ErrorK, o.ErrorK)
+			}
+		}
 	}
 }
 
@@ -149,18 +153,8 @@ func TestEqualLayersAreASlab(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		a, b := parts.Sample(300), slab.Sample(300)
-		for i, at := range a.TimesS {
-			if soon(parts, at) {
-				continue
-			}
-			same(t, "centre", at, a.Points[0][i], b.Points[0][i], parts, slab)
-			same(t, "mean", at, a.Mean[i], b.Mean[i], parts, slab)
-			same(t, "coldest", at, a.Coldest[i], b.Coldest[i], parts, slab)
-			same(t, "hottest", at, a.Hottest[i], b.Hottest[i], parts, slab)
-			up := model.Place{UpM: -0.31 * whole.Size.ThicknessM}
-			same(t, "below", at, parts.At(up, at), slab.At(up, at), parts, slab)
-		}
+		below := model.Place{UpM: -0.31 * whole.Size.ThicknessM}
+		sameCourses(t, parts, slab, [2]model.Place{below, below})
 	})
 }
 

@@ -4,6 +4,7 @@ package published
 import (
 	"embed"
 	"encoding/csv"
+	"io"
 	"strconv"
 	"testing"
 )
@@ -19,7 +20,13 @@ func Rows(t testing.TB, name string) []map[string]string {
 		t.Fatal(err)
 	}
 	defer f.Close()
-	r := csv.NewReader(f)
+	return Read(t, name, f)
+}
+
+// Read reads a table of another place in the same way.
+func Read(t testing.TB, name string, table io.Reader) []map[string]string {
+	t.Helper()
+	r := csv.NewReader(table)
 	r.Comment = '#'
 	all, err := r.ReadAll()
 	if err != nil || len(all) < 2 {
