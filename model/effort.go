@@ -12,12 +12,16 @@ type effort struct {
 
 // rougher is the effort of the second march. Where time is of second order the error of a step is of third, so that their sum goes with the
 // tolerance to 2/3. Half the control volumes and six times the tolerance make about four times the error; two polynomials fewer on each half
-// axis make six to twenty times that of the space (as in fewerWorse).
+// axis make six to twenty times that of the space (as in fewerWorse). Where ice moves three times the tolerance shows as much.
 func (s *solver) rougher(e effort, ran []Span) effort {
-	if s.front && s.used > 1 {
-		return effort{more: e.more, tolK: e.tolK * 3, rough: true, fewer: 0.7, ends: ran}
+	r := effort{more: e.more, tolK: e.tolK * 6, rough: true, fewer: 0.5, ends: ran}
+	if s.front {
+		r.tolK = e.tolK * 3
+		if s.used > 1 {
+			r.fewer = 0.7
+		}
 	}
-	return effort{more: e.more, tolK: e.tolK * 6, rough: true, fewer: 0.5, ends: ran}
+	return r
 }
 
 // How the difference of the two marches goes over into an error: that of a march with four or six times the error lies three or five
@@ -25,6 +29,7 @@ func (s *solver) rougher(e effort, ran []Span) effort {
 // twice the error.
 const (
 	volumesWorse     = 3
+	roundFrontWorse  = 2 // the last ice of cylinders and spheres goes fastest, and the error of the rougher march is less than four times as large
 	spaceWorse       = 1
 	stagesWorse      = 2   // polynomials with times of second order
 	roundWorse       = 1.5 // of cylinders and spheres: their centre has no node, and is where the error is largest
@@ -37,9 +42,8 @@ func (s *solver) polynomial() bool { return s.used > 0 && !s.front && s.product.
 // marchGoalK is the error that a march is to keep, K.
 const marchGoalK = 0.019
 
-// mostTries is how often a march may be made again with more effort. A front of ice makes every place turn in its own instant, which more
-// nodes and shorter steps move a little, and so does a surface that comes to boil; in two and three directions they cost more than they
-// are worth. What is left is stated.
+// mostTries is how often a march may be made again with more effort. Where a front of ice or a surface that comes to boil moves in two and three
+// directions, more nodes and shorter steps cost more than they are worth. What is left is stated.
 func (s *solver) mostTries() int {
 	switch {
 	case s.used > 1 && (s.front || s.wets()):
@@ -58,6 +62,12 @@ func (s *solver) firstEffort() (e effort, worse float64) {
 		if s.used > 1 {
 			e.tolK = 1.5e-2
 			return e, spaceWorse
+		}
+		if s.front {
+			e.tolK = 1e-2
+			if s.kinds[0] == radial || s.kinds[0] == spherical {
+				return e, roundFrontWorse
+			}
 		}
 		return e, volumesWorse
 	case s.product.Shape == Spheroid:

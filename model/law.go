@@ -14,6 +14,7 @@ type law struct {
 	zeroC      float64 // temperature at which h and u are 0, °C
 	warm, cold piece   // h ≥ 0 and h < 0
 	lowC       float64 // coldest temperature that the tables know, °C
+	byU        *uLaw   // the same the other way round
 }
 
 // piece is a table over evenly spaced heat contents from 0 on, downwards for the cold one; each row is a cubic through its two ends with
@@ -58,6 +59,7 @@ func newLaw(m *Material, factor float64) *law {
 		l.cold = tabulate(l.zeroC, coldestC, 64, props, nil)
 	}
 	l.warm = tabulate(l.zeroC, hottestC, 192, props, nil)
+	l.byU = l.readByU()
 	return l
 }
 
@@ -168,17 +170,6 @@ func (l *law) at(h float64) (t, u, dt, du float64) {
 func (l *law) temperature(h float64) float64 {
 	t, _, _, _ := l.at(h)
 	return t
-}
-
-// slide gives the Kirchhoff integral of a heat content, W/m, and its slope by it, the diffusivity, m²/s.
-func (l *law) slide(h float64) (u, du float64) {
-	r, x, per := l.row(h)
-	if x > 1 {
-		_, u, _, du := l.at(h)
-		return u, du
-	}
-	b := &r.u
-	return b[0] + x*(b[1]+x*(b[2]+x*b[3])), (b[1] + x*(2*b[2]+x*3*b[3])) * per
 }
 
 // kirchhoff gives the integral of a heat content, W/m.

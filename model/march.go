@@ -83,9 +83,9 @@ func (s *solver) march() (*History, error) {
 		if s.polynomial() {
 			e.more *= min(1.3, 1+0.1*by)
 		} else {
-			e.more *= min(1.5, 1.15*math.Sqrt(by))
+			e.more *= min(2.5, 1.15*math.Sqrt(by))
 		}
-		e.tolK /= min(6, 1.3*by)
+		e.tolK /= min(4, 1.3*by)
 	}
 }
 

@@ -16,6 +16,9 @@ func (s *solver) newMarched(e effort) *marched {
 	}
 	f.track.n = len(f.mesh.weights())
 	f.track.laws = f.state.keepsHeat()
+	if s.front && f.laws == nil {
+		f.laws = f.track.laws
+	}
 	f.now = make([]float64, f.track.n)
 	f.shot = f.mesh.shot(f, f.now)
 	return f
@@ -31,11 +34,20 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 	if s.product.Shape == LayeredSlab {
 		kind, kinds[0] = planeFull, planeFull
 	}
-	g := newLineGrid(s.product, kind, r, e.volumes(lineNodes), lineCrowd)
+	crowd := lineCrowd
+	if kind == radial || kind == spherical {
+		crowd = roundCrowd
+	}
+	g := newLineGrid(s.product, kind, r, e.volumes(lineNodes), crowd)
 	m := newLineMarch(g, laws)
 	m.lower, m.upper = s.faces[0][0], s.faces[0][1]
 	m.fill(s.product.StartC)
 	f.state, f.mesh = m, newLineMesh(g)
+	for _, i := range g.food {
+		if s.front {
+			f.laws = append(f.laws, laws[i])
+		}
+	}
 	nd := &nodes{x: [3][]float64{make([]float64, len(g.x)), {0}, {0}}}
 	for i, x := range g.x {
 		nd.x[0][i] = x / g.r
@@ -177,6 +189,6 @@ func (s *solver) lawsOf() []*law {
 }
 
 // lineNodes is how many volumes a half axis gets at first, cutNodes how many by the number of axes where a front moves through more than one.
-const lineNodes = 84
+const lineNodes = 42
 
 var cutNodes = [4]int{2: 22, 3: 14}

@@ -24,9 +24,9 @@ type link struct {
 // perfectM2KW stands for the contact of layers that touch perfectly, m²·K/W: as much as a layer of food 0.05 µm thick.
 const perfectM2KW = 1e-7
 
-// Nodes stand closer at a face than at the centre, by e to this power: of one axis, and of more, which are stepped explicitly and pay for the
-// closest.
-const lineCrowd, cutCrowd = 2.4, 1
+// Nodes stand closer at a face than at the centre, by e to this power: of one axis; of cylinders and spheres, where the last ice goes fastest in
+// the middle; and of more axes, which are stepped explicitly and pay for the closest.
+const lineCrowd, roundCrowd, cutCrowd = 2.4, 1, 1
 
 // depths gives the depths below a face of n+1 nodes, m, from 0 to r.
 func depths(r float64, n int, crowd float64) []float64 {
@@ -84,11 +84,25 @@ func newLineGrid(p *Product, kind axisKind, r float64, n int, crowd float64) *li
 	return g
 }
 
+// power is that of the radius in the area of a surface within.
+func (g *lineGrid) power() float64 {
+	return map[axisKind]float64{radial: 1, spherical: 2}[g.kind]
+}
+
+// moments gives the means of the distance from x, m, and of its square, m², over the volume between two places.
+func (g *lineGrid) moments(x, a, b float64) (first, second float64) {
+	e := g.power()
+	power := func(n float64) float64 { return (math.Pow(b, n) - math.Pow(a, n)) / n }
+	mean := func(n float64) float64 { return power(e+1+n) / power(e+1) } // of the place to the power n
+	m1 := mean(1)
+	return m1 - x, mean(2) - 2*x*m1 + x*x
+}
+
 // part makes the volumes and links of the nodes that were added since the last part.
 func (g *lineGrid) part(food int) {
 	first := len(g.w)
 	last := len(g.x) - 1
-	e := map[axisKind]float64{radial: 1, spherical: 2}[g.kind]
+	e := g.power()
 	volume := func(a, b float64) float64 {
 		if e == 0 {
 			return b - a
@@ -112,31 +126,82 @@ func (g *lineGrid) part(food int) {
 // lineMarch steps the heat contents of a line in time: the trapezoid rule and the second-order backward formula one after the other
 // (Bank et al. 1985, IEEE Trans. Electron Devices 32:1992-2007), which is L-stable, each solved by Newton's method to the end, so that
 // what flows over a face is what the food gains.
+//
+// The unknown is the Kirchhoff integral u at the nodes, which is smooth where a front of ice passes; the heat content is not. That of a volume is
+// the mean over the u in it: about the mean of a parabola through the node and its neighbours, a quarter of the difference between those below it
+// to as much above. So a front passes through a volume evenly, and no node turns in an instant.
 type lineMarch struct {
 	*lineGrid
 	laws         []*law
 	lower, upper *Face
 	skins        [2]*skin // lower, upper; the lower one is nil at a centre of symmetry
 	kept         []float64
+	// by node: half of the u within its volume, by the difference of its neighbours', and the weights of the differences from the node to the one
+	// before and the one after it in the mean u of its volume
+	spread, fore, aft []float64
 
-	h, rate              []float64 // heat contents, J/m³, and their slopes, J/(m³·s), now
-	h1, h2               []float64
-	b, f0, f1, f2        []float64  // W/m²
-	temp, dt, u, du      []float64  // of the last look: temperature, its slope by h, Kirchhoff integral, its slope by h
-	low, diag, up, delta []float64  // the three diagonals and the right side
-	qs                   [2]float64 // flow over each face at the end of the last solve, W/m²: of the equations that were solved, so that what comes in is what is gained
-	q0, q2               float64    // flow over both faces now and after the last try, W/m²
-	tryJ, inJ            float64    // heat that came in over the faces in the last try, and since the start, J/m²
-	fresh                bool       // no step since the surroundings changed: nothing to guess from
+	h, u, rate                []float64 // heat contents, J/m³, Kirchhoff integrals, W/m, and what flows in, W/m³, now
+	c, slope, uRate           []float64 // temperatures, °C, with their slopes, K/s, and those of u, W/(m·s), now
+	rate2, c2, slope2, uRate2 []float64 // after the last try
+	h1, h2, u1, u2            []float64
+	b, f0, f1, f2             []float64  // W/m²
+	mean, meanU, meanF, meanA []float64  // of the last look: mean heat content, its slopes by u, and by that of the node before and of the node after
+	temp, tempU               []float64  // of the last look, at faces and joints: temperature, its slope by u
+	low, diag, up, delta      []float64  // the three diagonals and the right side
+	qs                        [2]float64 // flow over each face at the end of the last solve, W/m²: of the equations that were solved, so that what comes in is what is gained
+	q0, q2                    float64    // flow over both faces now and after the last try, W/m²
+	tryJ, inJ                 float64    // heat that came in over the faces in the last try, and since the start, J/m²
+	fresh                     bool       // no step since the surroundings changed: nothing to guess from
 }
 
 func newLineMarch(g *lineGrid, laws []*law) *lineMarch {
 	m := &lineMarch{lineGrid: g, laws: laws}
 	n := len(g.x)
-	for _, s := range []*[]float64{&m.h, &m.rate, &m.h1, &m.h2, &m.b, &m.f0, &m.f1, &m.f2, &m.temp, &m.dt, &m.u, &m.du, &m.low, &m.diag, &m.up, &m.delta} {
+	for _, s := range []*[]float64{&m.spread, &m.fore, &m.aft, &m.h, &m.u, &m.rate, &m.c, &m.slope, &m.uRate, &m.rate2, &m.c2, &m.slope2, &m.uRate2,
+		&m.h1, &m.h2, &m.u1, &m.u2, &m.b, &m.f0, &m.f1, &m.f2, &m.mean, &m.meanU, &m.meanF, &m.meanA, &m.temp, &m.tempU, &m.low, &m.diag, &m.up, &m.delta} {
 		*s = make([]float64, n)
 	}
+	for _, p := range g.parts {
+		m.within(p)
+	}
 	return m
+}
+
+// within fills the weights of the nodes of a layer: those of a parabola through a node and its neighbours, and of a straight line at the ends and
+// in the first two volumes below a face, where a parabola would overshoot just after a change.
+func (m *lineMarch) within(p [2]int) {
+	if p[0] == p[1] {
+		return
+	}
+	from := m.x[p[0]]
+	for i := p[0]; i <= p[1]; i++ {
+		to := m.x[i]
+		if i < p[1] {
+			to = (m.x[i] + m.x[i+1]) / 2
+		}
+		m.spread[i] = 0.25
+		first, second := m.moments(m.x[i], from, to)
+		switch i {
+		case p[0]:
+			m.aft[i] = first / (m.x[i+1] - m.x[i])
+		case p[1]:
+			m.fore[i] = -first / (m.x[i] - m.x[i-1])
+		default:
+			before, after := m.x[i]-m.x[i-1], m.x[i+1]-m.x[i]
+			deep := float64(p[1] - i)
+			if m.kind == planeFull {
+				deep = min(deep, float64(i-p[0]))
+			}
+			second *= max(0, min(1, (deep-1)/2)) // from the second volume to the third
+			m.fore[i] = (second - after*first) / (before * (before + after))
+			m.aft[i] = (second + before*first) / (after * (before + after))
+		}
+		from = to
+	}
+	if m.kind != planeFull && p[0] == 0 { // flat at a centre of symmetry
+		e := m.power()
+		m.spread[0], m.aft[0] = 0.125, (e+1)/(4*(e+3))
+	}
 }
 
 // The numbers of the scheme: gamma is how far the first part goes.
@@ -145,28 +210,43 @@ var (
 	trErrorK = (-3*trGamma*trGamma + 4*trGamma - 2) / (12 * (2 - trGamma))
 )
 
-// look reads Kirchhoff integrals of heat contents, and temperatures where flows need them: at faces and joints.
-func (m *lineMarch) look(h []float64) {
-	if len(m.laws) == 1 {
-		l := m.laws[0]
-		for i, x := range h {
-			m.u[i], m.du[i] = l.slide(x)
-		}
-	} else {
-		for i, x := range h {
-			m.u[i], m.du[i] = m.laws[m.food[i]].slide(x)
-		}
-	}
+// leastSpread is the least half spread of u in a volume, W/m: of some thousandths of a degree.
+const leastSpread = 1e-3
+
+// look reads mean heat contents of the volumes with their slopes, and temperatures where flows need them: at faces and joints.
+func (m *lineMarch) look(u []float64) {
 	for _, p := range m.parts {
+		l := m.laws[m.food[p[0]]].byU
+		for i := p[0]; i <= p[1]; i++ {
+			x := u[i]
+			fore, aft := u[max(i-1, p[0])]-x, u[min(i+1, p[1])]-x
+			c := x + m.fore[i]*fore + m.aft[i]*aft
+			sign := m.spread[i]
+			d := (aft - fore) * sign
+			if d < 0 {
+				d, sign = -d, -sign
+			}
+			if d < leastSpread {
+				d, sign = leastSpread, 0
+			}
+			mean, slope, wide := l.mean(c, d)
+			wide *= sign
+			m.mean[i], m.meanF[i], m.meanA[i] = mean, slope*m.fore[i]-wide, slope*m.aft[i]+wide
+			m.meanU[i] = slope * (1 - m.fore[i] - m.aft[i])
+		}
+		if p[0] < p[1] { // their only neighbour
+			m.meanU[p[0]] += m.meanF[p[0]]
+			m.meanU[p[1]] += m.meanA[p[1]]
+			m.meanF[p[0]], m.meanA[p[1]] = 0, 0
+		}
 		for _, i := range p {
-			m.temp[i], _, m.dt[i], _ = m.laws[m.food[i]].at(h[i])
+			m.temp[i], m.tempU[i] = l.temperature(u[i])
 		}
 	}
 }
 
-// flows fills f with what flows into every volume, W/m², from the last look, at tau s into the step, and the slopes of the faces' flows by
-// heat content.
-func (m *lineMarch) flows(f []float64, tau float64) (slope [2]float64) {
+// flows fills f with what flows into every volume, W/m², at u, from the last look, at tau s into the step, and the slopes of the faces' flows by u.
+func (m *lineMarch) flows(f, u []float64, tau float64) (slope [2]float64) {
 	n := len(f)
 	in := 0.0
 	for i := 0; i < n-1; i++ {
@@ -175,7 +255,7 @@ func (m *lineMarch) flows(f []float64, tau float64) (slope [2]float64) {
 		if l.joint {
 			q = l.g * (m.temp[i+1] - m.temp[i])
 		} else {
-			q = l.g * (m.u[i+1] - m.u[i])
+			q = l.g * (u[i+1] - u[i])
 		}
 		f[i] = q - in
 		in = q
@@ -189,14 +269,15 @@ func (m *lineMarch) flows(f []float64, tau float64) (slope [2]float64) {
 		}
 		q, d := s.flux(m.temp[i], tau)
 		f[i] += q
-		m.qs[side], slope[side] = q, d*m.dt[i]
+		m.qs[side], slope[side] = q, d*m.tempU[i]
 	}
 	return slope
 }
 
-// heldAt gives the heat content of a face that is kept at its medium.
+// heldAt gives the Kirchhoff integral of a face that is kept at its medium.
 func (m *lineMarch) heldAt(side, i int, tau float64) float64 {
-	return m.laws[m.food[i]].heat(m.skins[side].mediumC(tau))
+	l := m.laws[m.food[i]]
+	return l.kirchhoff(l.heat(m.skins[side].mediumC(tau)))
 }
 
 // begin takes the state over at a change of surroundings, tau s into the step.
@@ -205,56 +286,76 @@ func (m *lineMarch) begin(tau float64) {
 	for side, s := range m.skins {
 		if s != nil && s.held {
 			i := (n - 1) * side
-			m.h[i] = m.heldAt(side, i, tau)
+			m.u[i] = m.heldAt(side, i, tau)
 		}
 	}
-	m.look(m.h)
-	m.flows(m.f0, tau)
+	m.look(m.u)
+	m.flows(m.f0, m.u, tau)
 	for i := range m.rate {
 		m.rate[i] = m.f0[i] / m.w[i]
 	}
 	for side, s := range m.skins {
 		if s != nil && s.held {
-			m.rate[(n-1)*side] = 0
+			i := (n - 1) * side
+			m.h[i], m.rate[i] = m.mean[i], 0
 		}
 	}
 	m.q0 = m.qs[0] + m.qs[1]
 	m.fresh = true
+	m.temperatures(m.u, m.rate, m.c, m.slope, m.uRate)
 }
 
 // Newton's method ends with a correction this small, K, or, where no node passed its freezing point, with one whose square is.
-const newtonK, newtonSmoothK = 1e-5, 2e-3
+const newtonK, newtonSmoothK = 1e-4, 5e-3
 
 // unfrozenK is the conductivity that turns Kirchhoff integrals into temperatures where only their size counts, W/(m·K): below that of any
 // food that freezes, so that temperatures come out large.
 const unfrozenK = 0.2
 
-// solve finds w·h = b + a·F(h) at tau, from h on; it says whether it did.
-func (m *lineMarch) solve(h, b []float64, a, tau float64) bool {
-	n := len(h)
-	for try := 0; try < 14; try++ {
-		m.look(h)
-		slope := m.flows(m.delta, tau)
-		for i := range h {
-			m.delta[i] = b[i] + a*m.delta[i] - m.w[i]*h[i]
-			m.diag[i] = m.w[i]
+// moved gives u moved by d, with the slope of the heat content at hand: onto the side where freezing begins by as much heat as the slope gives it,
+// since the slope there is many times as large.
+func (m *lineMarch) moved(i int, u, d float64) float64 {
+	if to := u + d; d > 0 || to > 0 || u < -4*leastSpread {
+		return to
+	}
+	l := m.laws[m.food[i]]
+	_, h := l.byU.sums(u)
+	return l.kirchhoff(h + m.meanU[i]*d)
+}
+
+// solve finds the u of w·h(u) = b + a·F(u) at tau, from u on, and h; it says whether it did.
+
+func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
+	n := len(u)
+	for try := 0; try < 20; try++ {
+		m.look(u)
+		slope := m.flows(m.delta, u, tau)
+		for i := range u {
+			w := m.w[i]
+			m.delta[i] = b[i] + a*m.delta[i] - w*m.mean[i]
+			m.diag[i] = w * m.meanU[i]
 		}
 		for i := 0; i < n-1; i++ {
 			l := &m.links[i]
-			x, y := a*l.g*m.du[i], a*l.g*m.du[i+1]
 			if l.joint {
-				x, y = a*l.g*m.dt[i], a*l.g*m.dt[i+1]
+				x, y := a*l.g*m.tempU[i], a*l.g*m.tempU[i+1]
+				m.diag[i] += x
+				m.diag[i+1] += y
+				m.up[i], m.low[i+1] = -y, -x
+				continue
 			}
+			x := a * l.g
 			m.diag[i] += x
-			m.diag[i+1] += y
-			m.up[i], m.low[i+1] = -y, -x
+			m.diag[i+1] += x
+			m.up[i] = m.w[i]*m.meanA[i] - x
+			m.low[i+1] = m.w[i+1]*m.meanF[i+1] - x
 		}
 		m.diag[0] -= a * slope[0]
 		m.diag[n-1] -= a * slope[1]
 		for side, s := range m.skins {
 			if s != nil && s.held {
 				i := (n - 1) * side
-				m.diag[i], m.delta[i] = 1, m.heldAt(side, i, tau)-h[i]
+				m.diag[i], m.delta[i] = 1, m.heldAt(side, i, tau)-u[i]
 				if side == 0 && n > 1 {
 					m.up[0] = 0
 				} else {
@@ -265,10 +366,13 @@ func (m *lineMarch) solve(h, b []float64, a, tau float64) bool {
 		m.factor(m.delta)
 		worst, passed := 0.0, false
 		for i, d := range m.delta {
-			was := h[i]
-			h[i] = was + d
-			passed = passed || (was < 0) != (h[i] < 0)
-			if d = math.Abs(d * m.du[i]); !(d <= worst) {
+			to := u[i] + d
+			if d < 0 && to < 0 {
+				to = m.moved(i, u[i], d)
+			}
+			passed = passed || (u[i] < 0) != (to < 0)
+			u[i] = to
+			if d = math.Abs(d); !(d <= worst) {
 				if worst = d; math.IsNaN(d) {
 					return false
 				}
@@ -278,10 +382,20 @@ func (m *lineMarch) solve(h, b []float64, a, tau float64) bool {
 		m.qs[0] += slope[0] * m.delta[0]
 		m.qs[1] += slope[1] * m.delta[n-1]
 		if worst < newtonK || worst < newtonSmoothK && !passed {
+			m.contents(h, u)
 			return true
 		}
 	}
 	return false
+}
+
+// contents fills h with the heat contents that the last linear equations were solved for.
+func (m *lineMarch) contents(h, u []float64) {
+	for _, p := range m.parts {
+		for i := p[0]; i <= p[1]; i++ {
+			h[i] = m.mean[i] + m.meanU[i]*m.delta[i] + m.meanF[i]*m.delta[max(i-1, p[0])] + m.meanA[i]*m.delta[min(i+1, p[1])]
+		}
+	}
 }
 
 // factor brings the three diagonals to a form that back uses, and solves them for y on the way.
@@ -328,17 +442,17 @@ func (m *lineMarch) back(y []float64) {
 // changes only by accept.
 func (m *lineMarch) try(tau, d float64) float64 {
 	a := trGamma / 2 * d
-	copy(m.h1, m.h)
+	copy(m.u1, m.u)
 	if !m.fresh {
-		for i, r := range m.rate {
-			m.h1[i] += trGamma * d * r
+		for i, r := range m.uRate {
+			m.u1[i] = m.moved(i, m.u[i], trGamma*d*r)
 		}
 	}
 	for i := range m.b {
 		m.f0[i] = m.w[i] * m.rate[i]
 		m.b[i] = m.w[i]*m.h[i] + a*m.f0[i]
 	}
-	if !m.solve(m.h1, m.b, a, tau+trGamma*d) {
+	if !m.solve(m.u1, m.h1, m.b, a, tau+trGamma*d) {
 		return math.Inf(1)
 	}
 	a1 := 1 / (trGamma * (2 - trGamma))
@@ -346,9 +460,9 @@ func (m *lineMarch) try(tau, d float64) float64 {
 	for i := range m.b {
 		m.f1[i] = (m.w[i]*m.h1[i] - m.b[i]) / a
 		m.b[i] = m.w[i] * (a1*m.h1[i] - (a1-1)*m.h[i])
-		m.h2[i] = m.h[i] + (m.h1[i]-m.h[i])/trGamma
+		m.u2[i] = m.moved(i, m.u1[i], (m.u1[i]-m.u[i])*(1/trGamma-1))
 	}
-	if !m.solve(m.h2, m.b, a, tau+d) {
+	if !m.solve(m.u2, m.h2, m.b, a, tau+d) {
 		return math.Inf(1)
 	}
 	m.q2 = m.qs[0] + m.qs[1]
@@ -361,14 +475,41 @@ func (m *lineMarch) try(tau, d float64) float64 {
 	m.back(m.delta)
 	worst := 0.0
 	for i, e := range m.delta {
-		if e = math.Abs(e) * max(m.laws[m.food[i]].thin(m.h2[i]), heatCounts); !(e <= worst) {
+		_, thin := m.laws[m.food[i]].byU.temperature(m.u2[i])
+		if e = math.Abs(e) * max(thin, m.meanU[i]*heatCounts); !(e <= worst) {
 			if worst = e; math.IsNaN(e) {
 				return math.Inf(1)
 			}
 		}
 	}
+	for i, f := range m.f2 {
+		m.rate2[i] = f / m.w[i]
+	}
+	m.unheld(m.rate2)
+	m.temperatures(m.u2, m.rate2, m.c2, m.slope2, m.uRate2)
+	if m.fresh {
+		return worst
+	}
+	at := cubicAt(0, trGamma, d)
+	for i, u := range m.u1 {
+		c, _ := m.laws[m.food[i]].byU.temperature(u)
+		kept := at.c0*m.c[i] + at.s0*m.slope[i] + at.c1*m.c2[i] + at.s1*m.slope2[i]
+		worst = max(worst, math.Abs(c-kept)*betweenCounts)
+	}
 	return worst
 }
+
+// unheld leaves no rate to faces that are kept at their medium.
+func (m *lineMarch) unheld(rate []float64) {
+	for side, s := range m.skins {
+		if s != nil && s.held {
+			rate[(len(rate)-1)*side] = 0
+		}
+	}
+}
+
+// betweenCounts is what the distance of the first part of a step from the cubic between its ends, which the track keeps, counts as an error.
+const betweenCounts = 0.6
 
 // heatCounts is what an error of the heat content counts at least, m³·K/J: half of what it is worth in unfrozen food of 3.6 MJ/(m³·K). Freezing
 // food hides it, and it would come out as a wrong time when the food has frozen or thawed.
@@ -377,31 +518,53 @@ const heatCounts = 0.5 / 3.6e6
 // accept makes the last try the state.
 func (m *lineMarch) accept(k *track, t float64) {
 	m.h, m.h2 = m.h2, m.h
+	m.u, m.u2 = m.u2, m.u
 	m.q0, m.inJ = m.q2, m.inJ+m.tryJ
-	for i := range m.rate {
-		m.rate[i] = m.f2[i] / m.w[i]
-	}
-	for side, s := range m.skins {
-		if s != nil && s.held {
-			m.rate[(len(m.rate)-1)*side] = 0
-		}
-	}
+	m.rate, m.rate2 = m.rate2, m.rate
+	m.c, m.c2 = m.c2, m.c
+	m.slope, m.slope2 = m.slope2, m.slope
+	m.uRate, m.uRate2 = m.uRate2, m.uRate
 	m.fresh = false
 	m.keep(k, t)
 }
 
-// keep writes the state into a track.
+// keep writes the temperatures of the state into a track, with the slopes that the flows give them.
 func (m *lineMarch) keep(k *track, t float64) {
-	h, slope := k.add(t)
-	copy(h, m.h)
-	copy(slope, m.rate)
+	c, slope := k.add(t)
+	copy(c, m.c)
+	copy(slope, m.slope)
+}
+
+// temperatures fills c with the temperatures at u and slope with what rate, W/m³, makes of them in a second.
+func (m *lineMarch) temperatures(u, rate, c, slope, uRate []float64) {
+	m.look(u)
+	n := len(c)
+	for i := range c {
+		m.delta[i] = rate[i]
+		m.diag[i], m.up[i], m.low[i] = m.meanU[i], m.meanA[i], m.meanF[i]
+	}
+	for side, s := range m.skins {
+		if s != nil && s.held {
+			i := (n - 1) * side
+			m.diag[i], m.up[i], m.low[i] = 1, 0, 0
+		}
+	}
+	m.factor(m.delta)
+	for i, u := range u {
+		c[i], slope[i] = m.laws[m.food[i]].byU.temperature(u)
+		uRate[i] = m.delta[i]
+		slope[i] *= uRate[i]
+	}
 }
 
 // fill starts at one temperature.
 func (m *lineMarch) fill(c float64) {
 	for i := range m.h {
-		m.h[i] = m.laws[m.food[i]].heat(c)
+		l := m.laws[m.food[i]]
+		m.u[i] = l.kirchhoff(l.heat(c))
 	}
+	m.look(m.u)
+	copy(m.h, m.mean)
 }
 
 func (m *lineMarch) surround(skins func(*Face) *skin) {
@@ -418,26 +581,30 @@ func (m *lineMarch) firstS() float64 {
 	}
 	n := len(m.x) - 1
 	d := m.x[n] - m.x[n-1]
-	return 0.2 * d * d / (m.du[n] + 1e-9)
+	return 0.2 * d * d * m.meanU[n]
 }
 
 func (m *lineMarch) span() (low, high float64) {
 	low, high = math.Inf(1), math.Inf(-1)
-	for i, h := range m.h {
-		c := m.laws[m.food[i]].temperature(h)
+	for i, u := range m.u {
+		c, _ := m.laws[m.food[i]].byU.temperature(u)
 		low, high = min(low, c), max(high, c)
 	}
 	return low, high
 }
 
 func (m *lineMarch) save(float64) {
-	m.kept = append(append(m.kept[:0], m.h...), m.rate...)
+	m.kept = m.kept[:0]
+	for _, x := range [][]float64{m.h, m.rate, m.u, m.c, m.slope, m.uRate} {
+		m.kept = append(m.kept, x...)
+	}
 }
 
 func (m *lineMarch) restore() {
 	n := len(m.h)
-	copy(m.h, m.kept[:n])
-	copy(m.rate, m.kept[n:])
+	for i, x := range [][]float64{m.h, m.rate, m.u, m.c, m.slope, m.uRate} {
+		copy(x, m.kept[i*n:])
+	}
 }
 
 func (m *lineMarch) touches(k *skin) (nodes []int) {
@@ -449,10 +616,4 @@ func (m *lineMarch) touches(k *skin) (nodes []int) {
 	return nodes
 }
 
-func (m *lineMarch) keepsHeat() []*law {
-	out := make([]*law, len(m.food))
-	for i, f := range m.food {
-		out[i] = m.laws[f]
-	}
-	return out
-}
+func (m *lineMarch) keepsHeat() []*law { return nil }

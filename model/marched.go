@@ -8,6 +8,7 @@ type marched struct {
 	state marcher
 	track *track
 	mesh  mesh
+	laws  []*law    // by node, where fronts are followed; nil where the field is smooth
 	now   []float64 // temperatures of the nodes at the instant that was asked for last
 	shot  snapshot  // of them
 	// bounds are what no place can pass, by span, °C: the start and what the surfaces so far are in balance with.
@@ -93,7 +94,7 @@ func (f *marched) differs(h *History, rough *marched) float64 {
 	end := rough.track.times[len(rough.track.times)-1]
 	onto := rough.mesh.onto(f.mesh)
 	grow := 1.4
-	if f.track.laws != nil { // every node turns in its own time
+	if f.laws != nil { // every node turns in its own time
 		grow = 1.1
 	}
 	for i := range h.Spans {
@@ -118,10 +119,10 @@ func (f *marched) differs(h *History, rough *marched) float64 {
 
 // atFront tells whether the front of ice stands beside node j in one march or between the two marches.
 func (f *marched) atFront(mine, there []float64, j int) bool {
-	if f.track.laws == nil {
+	if f.laws == nil {
 		return false
 	}
-	zero := f.track.laws[j].zeroC
+	zero := f.laws[j].zeroC
 	frozen := mine[j] < zero
 	if there[j] < zero != frozen {
 		return true

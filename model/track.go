@@ -6,8 +6,8 @@ import (
 )
 
 // track keeps n nodes at rising instants, with their slopes in time: cubics through both stand between. A change of surroundings stands
-// twice, with the slopes before and after it. Where a front of ice moves, heat contents are kept, which change evenly when it passes
-// a node, and not temperatures, which do not.
+// twice, with the slopes before and after it. Where a front of ice moves through more than one direction, heat contents are kept, which change
+// evenly when it passes a node, and not temperatures, which do not.
 type track struct {
 	n     int
 	times []float64
@@ -60,7 +60,11 @@ func (k *track) find(t float64) between {
 	if d <= 0 {
 		return between{i: i, c0: 1}
 	}
-	x := max(0, min(1, (t-t0)/d))
+	return cubicAt(i, max(0, min(1, (t-t0)/d)), d)
+}
+
+// cubicAt gives the weights at the share x of an interval i of length d.
+func cubicAt(i int, x, d float64) between {
 	y := x * x
 	return between{i, 1 + y*(2*x-3), d * x * (1 + x*(x-2)), y * (3 - 2*x), d * y * (x - 1)}
 }

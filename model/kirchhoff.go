@@ -1,0 +1,140 @@
+package model
+
+import "math"
+
+// uLaw is the law of a food read the other way round: by the Kirchhoff integral u, W/m, which is smooth in time and place where a front of ice
+// passes; the heat content is not.
+type uLaw struct {
+	warm, cold uPiece // u ≥ 0 and u < 0
+}
+
+// uPiece is a table from u = 0 on, downwards for the cold one. Its rows grow with the distance from 0, uRowsPerOctave to each doubling of
+// 1 + |u|/first, so that the place in it is read off the number's own bits.
+type uPiece struct {
+	per  float64 // 1/first, m/W; negative for the cold piece
+	rows []uRow
+}
+
+// uRow holds cubics over a row in its own coordinate 0…1: of the heat content with its integral over u at the start of the row, and of the
+// temperature.
+type uRow struct {
+	from, per, wide float64 // W/m, m/W, W/m
+	g               float64 // ∫h du from 0 to the row, J·W/m⁴
+	h, t            [4]float64
+}
+
+const (
+	uRowBits       = 3
+	uRowsPerOctave = 1 << uRowBits
+	// uFirst is the u at which rows have grown to twice the first, W/m: of some hundredths of a degree.
+	uFirst = 0.02
+)
+
+// readByU tables the law by u.
+func (l *law) readByU() *uLaw {
+	end := func(p *piece) float64 { return l.kirchhoff(float64(len(p.rows)) / p.per) }
+	return &uLaw{l.pieceByU(end(&l.warm)), l.pieceByU(end(&l.cold))}
+}
+
+// pieceByU tables the law from u = 0 to end.
+func (l *law) pieceByU(end float64) uPiece {
+	sign := math.Copysign(1, end)
+	start := func(row int) float64 { // 1 + |u|/uFirst rises by uRowsPerOctave even parts to its next double
+		octave, part := row/uRowsPerOctave, row%uRowsPerOctave
+		return sign * uFirst * (math.Ldexp(1+float64(part)/uRowsPerOctave, octave) - 1)
+	}
+	n := 1
+	for math.Abs(start(n)) < math.Abs(end) {
+		n++
+	}
+	type point struct{ h, t, dh, dt float64 }
+	at := func(h float64) point {
+		t, _, dt, du := l.at(h)
+		return point{h, t, 1 / du, dt / du}
+	}
+	p := uPiece{per: sign / uFirst, rows: make([]uRow, n)}
+	a := at(sign * 1e-9) // beside the freezing point
+	a.h = 0
+	g := 0.0
+	for i := range p.rows {
+		from, to := start(i), start(i+1)
+		d := to - from
+		b := at(l.heatAtU(to, a.h+a.dh*d))
+		r := uRow{from: from, per: 1 / d, wide: d, g: g, h: cubic(a.h, b.h, a.dh*d, b.dh*d), t: cubic(a.t, b.t, a.dt*d, b.dt*d)}
+		g += d * (r.h[0] + r.h[1]/2 + r.h[2]/3 + r.h[3]/4)
+		p.rows[i], a = r, b
+	}
+	return p
+}
+
+// heatAtU gives the heat content of a Kirchhoff integral, by Newton's method from a heat content of the same sign.
+func (l *law) heatAtU(u, h float64) float64 {
+	for range 60 {
+		_, v, _, dv := l.at(h)
+		next := h + (u-v)/dv
+		if next*u < 0 {
+			next = h / 2
+		}
+		if math.Abs(next-h) <= 1e-14*math.Abs(h) {
+			return next
+		}
+		h = next
+	}
+	return h
+}
+
+// row finds the row of a Kirchhoff integral and the place in it; beyond the last row the place is above 1.
+func (b *uLaw) row(u float64) (*uRow, float64) {
+	p := &b.warm
+	if u < 0 {
+		p = &b.cold
+	}
+	i := int(math.Float64bits(1+u*p.per)>>(52-uRowBits)) - 1023<<uRowBits
+	if uint(i) >= uint(len(p.rows)) {
+		i = len(p.rows) - 1
+	}
+	r := &p.rows[i]
+	return r, (u - r.from) * r.per
+}
+
+// sums gives the heat content at u, J/m³, and its integral over u from 0.
+func (b *uLaw) sums(u float64) (g, h float64) {
+	r, x := b.row(u)
+	if x > 1 { // beyond the table
+		x--
+		top, d := r.h[0]+r.h[1]+r.h[2]+r.h[3], r.h[1]+2*r.h[2]+3*r.h[3]
+		h = top + x*d
+		return r.g + (r.h[0]+r.h[1]/2+r.h[2]/3+r.h[3]/4+x*(top+x*d/2))*r.wide, h
+	}
+	c := &r.h
+	return r.g + x*(c[0]+x*(c[1]*0.5+x*(c[2]*(1./3)+x*c[3]*0.25)))*r.wide, c[0] + x*(c[1]+x*(c[2]+x*c[3]))
+}
+
+// mean gives the mean heat content over u - d to u + d, J/m³, with its slopes by u and by d.
+func (b *uLaw) mean(u, d float64) (h, byU, byD float64) {
+	if d < math.Abs(u) {
+		r, x := b.row(u)
+		if y := d * r.per; x <= 1 && math.Abs(y) < 1 { // all on one cubic
+			c := &r.h
+			y2 := y * y * (1. / 3)
+			bend := c[2] + 3*c[3]*x
+			return c[0] + x*(c[1]+x*(c[2]+x*c[3])) + y2*bend, (c[1] + x*(2*c[2]+x*3*c[3]) + y2*3*c[3]) * r.per, 2 * (1. / 3) * y * bend * r.per
+		}
+	}
+	g0, h0 := b.sums(u - d)
+	g1, h1 := b.sums(u + d)
+	half := 0.5 / d
+	h = (g1 - g0) * half
+	return h, (h1 - h0) * half, (h1+h0)*half - 2*h*half
+}
+
+// temperature gives that at u, °C, and its slope, K·m/W.
+func (b *uLaw) temperature(u float64) (t, dt float64) {
+	r, x := b.row(u)
+	c := &r.t
+	if x > 1 {
+		d := c[1] + 2*c[2] + 3*c[3]
+		return c[0] + c[1] + c[2] + c[3] + d*(x-1), d * r.per
+	}
+	return c[0] + x*(c[1]+x*(c[2]+x*c[3])), (c[1] + x*(2*c[2]+x*3*c[3])) * r.per
+}
