@@ -109,11 +109,11 @@ const gravity = 9.80665 // m/s²
 // at gives the film in W/(m²·K), with the air at the mean of surface and medium.
 func (f *airFilm) at(surfaceC, airC float64) float64 {
 	x := (max((surfaceC+airC)/2, airLowC) - airNodesFromC) / airNodeK
-	i := int(x)
-	if !(x >= 1 && i+2 < len(f.nodes)) {
+	if !(x >= 1 && x < float64(len(f.nodes)-2)) {
 		w, _ := f.which(surfaceC, airC)
 		return w
 	}
+	i := int(x)
 	near := f.nodes[i-1 : i+3]
 	for j := range near {
 		if !near[j].ready {
