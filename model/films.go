@@ -12,6 +12,7 @@ import (
 type filmCase struct {
 	shape     *Shape
 	size      Size
+	face      *Face // of a slab, where its other face has surroundings of its own; else nil
 	foodC     float64
 	mediumC   float64
 	airMS     float64
@@ -49,6 +50,7 @@ type airFilm struct {
 	lengthM, airMS, totalPa float64
 	free, forced            *correlation // forced: nil in still air, and below its range
 	below                   *correlation // the forced one that is left out because the air is too slow for it; nil usually
+	lies                    *Face        // the face of a slab that free convection is told apart for; nil: as free says
 	nodes                   []airNode    // what the film is interpolated from; nil: it is worked out each time
 }
 
@@ -58,15 +60,15 @@ type airNode struct {
 	kL      float64 // conductivity by length, W/(m²·K)
 	b, d    float64 // of free convection, by the difference in K: see freeBy
 	mostK   float64 // difference at which free convection leaves its range
+	layerW  float64 // film of air that lies still in layers, at a difference of 1 K; 0 if none counts
 	forcedW float64 // film of forced convection, W/(m²·K); 0 if none counts
 }
 
 // Air nodes: 4 K apart, so that a cubic through four of them is within 1e-7 of the formulas.
 const airNodesFromC, airNodeK, airNodes = -48, 4, 100
 
-// longSpheroid is the length by diameter from which a spheroid lies in a stream as a cylinder does: a measured roast of 2.5 cooled even
-// faster (McDonald, Sun & Kenny 2000, as in the measured cases). Rounder ones take the sphere's film, which is lower. The number between is
-// our own judgement.
+// longSpheroid is the length by diameter from which a spheroid takes the cylinder's film in a stream: from there on Yovanovich's formula for
+// spheroids (AIAA paper 88-0743, 1988; from memory) gives as much within 8 %. Rounder ones take the sphere's film, which is lower.
 const longSpheroid = 1.5
 
 // newAirFilm takes the correlations that fit a case. Whether the air is too slow for the forced one is decided by the air alone, so that
@@ -75,6 +77,9 @@ func newAirFilm(moving bool, c *filmCase) *airFilm {
 	f := &airFilm{lengthM: c.lengthM(), totalPa: pressurePa(c.altitudeM), free: &freeCylinder}
 	if c.shape == Sphere {
 		f.free = &freeSphere
+	}
+	if c.shape == Slab || c.shape == LayeredSlab {
+		f.lies = c.face
 	}
 	f.nodes = make([]airNode, airNodes)
 	if !moving {
@@ -106,14 +111,27 @@ func (f *airFilm) rayleigh(a *air, differenceK float64) float64 {
 
 const gravity = 9.80665 // m/s²
 
+// layered tells whether air lies in layers on a face of a slab: cold air on a cold upper face, warm air under a warm lower one. Both faces
+// together, or the other direction, take the cylinder's film: it is within 10 % of the mean of the two faces of a plate, and below that of the
+// face on which air rises or falls.
+func (f *airFilm) layered(surfaceC, airC float64) bool {
+	return f.lies == Top && surfaceC < airC || f.lies == Underside && surfaceC > airC
+}
+
+// layer is the film of air that lies in layers, W/(m²·K); a plate's length is its area by its edge, a quarter of the side of a square one.
+func (f *airFilm) layer(a *air, differenceK float64) float64 {
+	const side = 1.0 / 4
+	return plateLayered(f.rayleigh(a, differenceK)*side*side*side) * a.k / (f.lengthM * side)
+}
+
 // at gives the film in W/(m²·K), with the air at the mean of surface and medium.
 func (f *airFilm) at(surfaceC, airC float64) float64 {
 	x := (max((surfaceC+airC)/2, airLowC) - airNodesFromC) / airNodeK
-	i := int(x)
-	if !(x >= 1 && i+2 < len(f.nodes)) {
+	if !(x >= 1 && x < float64(len(f.nodes)-2)) {
 		w, _ := f.which(surfaceC, airC)
 		return w
 	}
+	i := int(x)
 	near := f.nodes[i-1 : i+3]
 	for j := range near {
 		if !near[j].ready {
@@ -128,7 +146,11 @@ func (f *airFilm) at(surfaceC, airC float64) float64 {
 		n.b += w * near[j].b
 		n.d += w * near[j].d
 		n.mostK += w * near[j].mostK
+		n.layerW += w * near[j].layerW
 		n.forcedW += w * near[j].forcedW
+	}
+	if f.layered(surfaceC, airC) {
+		return max(n.layerW*math.Sqrt(math.Sqrt(math.Abs(surfaceC-airC))), n.forcedW)
 	}
 	return max(n.kL*f.free.by(n.b, n.d, min(math.Abs(surfaceC-airC), n.mostK)), n.forcedW)
 }
@@ -139,6 +161,9 @@ func (f *airFilm) ready(n *airNode, tC float64) {
 	ra := f.rayleigh(&a, 1)
 	*n = airNode{ready: true, kL: a.k / f.lengthM, mostK: f.free.most / ra}
 	n.b, n.d = f.free.perK(ra, a.pr())
+	if f.lies != nil {
+		n.layerW = f.layer(&a, 1)
+	}
 	if f.forced != nil {
 		n.forcedW = f.forced.nusselt(f.reynolds(&a), a.pr()) * n.kL
 	}
@@ -149,6 +174,9 @@ func (f *airFilm) which(surfaceC, airC float64) (w float64, by *correlation) {
 	a := airOf(max((surfaceC+airC)/2, airLowC), f.totalPa)
 	ra := f.rayleigh(&a, surfaceC-airC)
 	w, by = f.free.nusselt(min(ra, f.free.most), a.pr())*a.k/f.lengthM, f.free
+	if f.layered(surfaceC, airC) {
+		w, by = f.layer(&a, surfaceC-airC), &freeLayered
+	}
 	if f.forced == nil {
 		return w, by
 	}

@@ -369,7 +369,11 @@ func (s *solver) skinOf(e *Exposure, face *Face, st *Step) *skin {
 	} else {
 		food = p.Layers[0].Food
 	}
-	return newSkin(e, &filmCase{shape: s.product.Shape, size: s.product.Size, foodC: s.product.StartC}, food.WaterActivity, st)
+	c := &filmCase{shape: s.product.Shape, size: s.product.Size, foodC: s.product.StartC}
+	if face != nil && st.on(Top) != st.on(Underside) {
+		c.face = face
+	}
+	return newSkin(e, c, food.WaterActivity, st)
 }
 
 // raisedTo is the freezing point that chill media are raised to: the highest of the foods that are not calculated through freezing; nil if

@@ -111,7 +111,7 @@ type moistAir struct{ tC, vapourPa, totalPa float64 }
 // cp Le^(2/3) (air - wet), cp of the moist air, = latent heat × (humidity ratio at the surface - that of the air).
 func (m moistAir) wetBulbC(activity float64) float64 {
 	w := humidityRatio(m.vapourPa, m.totalPa)
-	lo, hi := -100.0, max(m.tC, dewC(m.vapourPa))+1
+	lo, hi := -100.0, min(max(m.tC, dewC(m.vapourPa))+1, satC(m.totalPa/activity)) // it does not get hotter than its water boils
 	for range 60 {
 		t := (lo + hi) / 2
 		if moistCp(w)*lewisFactor*(m.tC-t) > latentJkg(t)*(humidityRatio(activity*satPa(t), m.totalPa)-w) {

@@ -52,7 +52,7 @@ var (
 	MovingAir = &Surface{Name: "moving air", Needs: []string{"Air speed"}, May: []string{"Film coefficient", "Relative humidity", "Radiating temperature", "Emissivity", "Surface", "Wrap resistance"}, film: movingAir,
 		Help: "air blown over the food; as still air, and never less than it"}
 	WaterBath = &Surface{Name: "water bath", May: []string{"Film coefficient", "Wrap resistance"},
-		film: stated(waterBathW, "stated low: bagged and rolled joints in water were measured at a few tens of W/m²K (fitted to James & James 2002, Meat Refrigeration, table 16.7), textbooks give 50 to 100 for liquids left still"),
+		film: stated(waterBathW, "stated low: a vacuum-packed roast cooled more slowly in water than in air of 2 m/s (James & James 2002, Meat Refrigeration, table 16.7), at 21 to 31 W/m²K by how its shape and start are read; textbooks give 50 to 100 for liquids left still"),
 		Help: "water left still; a low film is taken unless you type one"}
 	StirredWater = &Surface{Name: "stirred water", May: []string{"Film coefficient", "Wrap resistance"},
 		film: stated(95, "low end of 95 to 155 W/m²K for a pouch in stirred water (Baldwin 2012, Int. J. Gastronomy and Food Science 1:15-30; from memory)"),
@@ -74,8 +74,8 @@ var (
 // steamW is the film of condensing steam, W/(m²·K).
 const steamW = 1000
 
-// waterBathW is the film taken in water left still, W/(m²·K).
-const waterBathW = 30
+// waterBathW is the film taken in water left still, W/(m²·K): just below the lowest that the measured cases can be read to give.
+const waterBathW = 20
 
 // Refusal is a process or food that conduction does not describe: what a person may type, why it is refused, what to do instead.
 type Refusal struct{ Words, Why, Instead string }

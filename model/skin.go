@@ -27,6 +27,7 @@ type skin struct {
 	condenses bool     // vapour condenses below the dew point, wet or dry
 	slowHeats bool     // of two forms of the law of evaporation the one that leaves the food colder; else the hotter
 	activity  float64  // of the water at a wet surface
+	boilsC    float64  // temperature at which the water at a wet surface boils, °C
 	given     bool     // the food's activity is known
 
 	law   func(surfaceC, tauS float64) (w, slope float64) // stands for everything (tests)
@@ -122,6 +123,7 @@ func (s *skin) wets(e *Exposure, aw *float64) {
 	if aw != nil {
 		s.activity, s.given = *aw, true
 	}
+	s.boilsC = satC(s.totalPa / s.activity)
 }
 
 // wet tells whether the surface is said to be wet.
@@ -225,9 +227,19 @@ func (s *skin) outer(outerC float64, a *around) float64 {
 	}
 	if s.condenses {
 		w -= h * a.massWK * s.drive(outerC, a) * latentJkg(outerC)
+		if above := outerC - (s.boilsC - boilsEarlyK); s.wet && above > 0 { // where air is nearly all vapour, drive does not hold it there
+			w -= boilW * above
+		}
 	}
 	return w
 }
+
+// boilW is the film by which a wet surface whose water boils gives off steam, W/(m²·K): within the 2500 to 100000 of boiling water (Çengel,
+// Heat Transfer, typical values). It sets in boilsEarlyK below boiling, so that no usual oven takes the surface above it.
+const (
+	boilW       = 1e4
+	boilsEarlyK = 0.3
+)
 
 // radiationW is the net heat by radiation, W/m².
 func (s *skin) radiationW(outerC float64) float64 {

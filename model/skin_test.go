@@ -25,6 +25,7 @@ func surfaces() map[string]*Exposure {
 		"blown, radiating":  with(air(163, 1.3), func(e *Exposure) { e.RadiatingC, e.Emissivity = ptr(196.0), ptr(0.87) }),
 		"wet oven":          with(air(158, 1.7), func(e *Exposure) { e.Wet = ptr(wet) }),
 		"wet humid oven":    with(air(141, 0.9), func(e *Exposure) { e.Wet, e.RH, e.RadiatingC = ptr(wet), ptr(7.0), ptr(133.0) }),
+		"wet, in vapour":    with(air(205, 0), func(e *Exposure) { e.Wet, e.RH, e.RadiatingC = ptr(wet), ptr(5.6), ptr(205.0) }),
 		"wet chill":         with(air(3, 1.9), func(e *Exposure) { e.Wet, e.RH = ptr(wet), ptr(83.0) }),
 		"wrapped oven":      with(air(149, 2.1), func(e *Exposure) { e.WrapM2KW, e.RadiatingC, e.RH = ptr(0.013), ptr(171.0), ptr(31.0) }),
 		"dry, condensing":   with(air(87, 0.6), func(e *Exposure) { e.RH = ptr(64.0) }),
@@ -219,6 +220,34 @@ func TestWetSurfaceStaysBelowBoiling(t *testing.T) {
 		}
 		if w, slope := s.flux(137, 0); math.IsInf(w, 0) || math.IsNaN(w) || math.IsNaN(slope) {
 			t.Errorf("beyond boiling: %g, %g", w, slope)
+		}
+	}
+}
+
+// In an oven full of vapour too: with nothing conducted a wet surface is at the boiling point of water, 99.97 °C at the sea (steam tables) and
+// 91.29 °C at 2600 m (standard atmosphere and steam tables, from memory), whatever the share of vapour near to all of it.
+func TestWetSurfaceBoilsInVapour(t *testing.T) {
+	for _, c := range []struct{ altitudeM, boilsC float64 }{{0, 99.97}, {2600, 91.29}} {
+		for _, share := range []float64{0.96, 0.98, 1} {
+			for name, e := range map[string]*Exposure{"still": {Surface: StillAir}, "blown": {Surface: MovingAir, AirMS: ptr(0.7)}, "typed": {Surface: StillAir, FilmW: ptr(13.0)}} {
+				e.RadiatingC, e.Wet, e.RH, e.Medium = ptr(205.0), ptr(true), ptr(100*share*pressurePa(c.altitudeM)/satPa(205)), Course{C: []float64{205}}
+				s := newSkin(e, skinCase(), nil, &Step{Stage: Cook, DurationS: 900, AltitudeM: c.altitudeM})
+				lo, hi := 0.0, 205.0
+				for range 50 {
+					mid := (lo + hi) / 2
+					if w, _ := s.flux(mid, 0); w > 0 {
+						lo = mid
+					} else {
+						hi = mid
+					}
+				}
+				if above := lo - c.boilsC; above > 0.05 || above < -1.2 {
+					t.Errorf("%s, %g m, %g of it vapour: %.3f °C, %.3f K above boiling", name, c.altitudeM, share, lo, above)
+				}
+			}
+			if wet := (moistAir{205, share * pressurePa(c.altitudeM), pressurePa(c.altitudeM)}).wetBulbC(1); wet > c.boilsC+0.05 || wet < c.boilsC-1.2 {
+				t.Errorf("%g m, %g of it vapour: wet bulb %.3f °C", c.altitudeM, share, wet)
+			}
 		}
 	}
 }

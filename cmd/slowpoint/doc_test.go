@@ -299,7 +299,7 @@ func measuredTable() string {
 	var rows [][]string
 	for _, c := range verify.MeasuredCases() {
 		r := c.Compare()
-		rows = append(rows, []string{r.ID, r.What, r.Words(), amount(r.Measured, r.Unit), amount(r.Got, r.Unit), ratio(r.Ratio), r.Asked() + ": " + metWord(r.Met), r.Taken})
+		rows = append(rows, []string{r.ID, r.What, r.Words(), amount(r.Measured, r.Unit), amount(r.Got, r.Unit), ratio(r.Ratio), r.Outcome(), r.Taken})
 	}
 	return table("Case|Food and surroundings|What|Measured|Predicted|Ratio|Asked|What the publication does not say, and what was taken", rows)
 }

@@ -61,8 +61,8 @@ func printMeasured(out io.Writer) error {
 		if r.Met {
 			met++
 		}
-		fmt.Fprintf(out, "%s: %s\n  %s: measured %s, predicted %s, ratio %s; asked %s: %s\n  source: %s\n  taken: %s\n\n",
-			r.ID, r.What, r.Words(), amount(r.Measured, r.Unit), amount(r.Got, r.Unit), ratio(r.Ratio), r.Asked(), metWord(r.Met), r.Source, r.Taken)
+		fmt.Fprintf(out, "%s: %s\n  %s: measured %s, predicted %s, ratio %s; asked %s\n  source: %s\n  taken: %s\n\n",
+			r.ID, r.What, r.Words(), amount(r.Measured, r.Unit), amount(r.Got, r.Unit), ratio(r.Ratio), r.Outcome(), r.Source, r.Taken)
 	}
 	_, err := fmt.Fprintf(out, "%d of %d measurements met\n", met, len(list))
 	if err != nil {

@@ -100,7 +100,12 @@ var errNotPassed = errors.New("is not passed")
 
 // passing finds when a place of a history passes a temperature for good.
 func passing(h *model.History, place model.Place, c float64) (float64, error) {
-	lo, hi := 0.0, h.EndS()
+	return passingSince(h, place, c, 0)
+}
+
+// passingSince looks at what comes after an instant, s.
+func passingSince(h *model.History, place model.Place, c, since float64) (float64, error) {
+	lo, hi := since, h.EndS()
 	start, end := h.At(place, lo) > c, h.At(place, hi) > c
 	if start == end {
 		return 0, fmt.Errorf("%g °C: %w", c, errNotPassed)
