@@ -60,11 +60,23 @@ func (l *law) pieceByU(end float64) uPiece {
 		from, to := start(i), start(i+1)
 		d := to - from
 		b := at(l.heatAtU(to, a.h+a.dh*d))
-		r := uRow{from: from, per: 1 / d, wide: d, g: g, h: cubic(a.h, b.h, a.dh*d, b.dh*d), t: cubic(a.t, b.t, a.dt*d, b.dt*d)}
+		r := uRow{from: from, per: 1 / d, wide: d, g: g, h: steadyCubic(a.h, b.h, a.dh*d, b.dh*d), t: steadyCubic(a.t, b.t, a.dt*d, b.dt*d)}
 		g += d * (r.h[0] + r.h[1]/2 + r.h[2]/3 + r.h[3]/4)
 		p.rows[i], a = r, b
 	}
 	return p
+}
+
+// steadyCubic gives the coefficients of a cubic from a to b over 0…1 with slopes da and db, or less where it would turn (Fritsch & Carlson 1980, SIAM
+// J. Numer. Anal. 17:238-246): beside a bend.
+func steadyCubic(a, b, da, db float64) [4]float64 {
+	steep := func(slope float64) float64 {
+		if most := 3 * (b - a); math.Abs(slope) > math.Abs(most) {
+			return most
+		}
+		return slope
+	}
+	return cubic(a, b, steep(da), steep(db))
 }
 
 // heatAtU gives the heat content of a Kirchhoff integral, by Newton's method from a heat content of the same sign.
@@ -114,11 +126,11 @@ func (b *uLaw) sums(u float64) (g, h float64) {
 func (b *uLaw) mean(u, d float64) (h, byU, byD float64) {
 	if d < math.Abs(u) {
 		r, x := b.row(u)
-		if y := d * r.per; x <= 1 && math.Abs(y) < 1 { // all on one cubic
+		if y := math.Abs(d * r.per); y <= x && x+y <= 1 { // all in one row
 			c := &r.h
 			y2 := y * y * (1. / 3)
 			bend := c[2] + 3*c[3]*x
-			return c[0] + x*(c[1]+x*(c[2]+x*c[3])) + y2*bend, (c[1] + x*(2*c[2]+x*3*c[3]) + y2*3*c[3]) * r.per, 2 * (1. / 3) * y * bend * r.per
+			return c[0] + x*(c[1]+x*(c[2]+x*c[3])) + y2*bend, (c[1] + x*(2*c[2]+x*3*c[3]) + y2*3*c[3]) * r.per, 2 * (1. / 3) * y * bend * math.Abs(r.per)
 		}
 	}
 	g0, h0 := b.sums(u - d)

@@ -212,3 +212,8 @@ func (l *law) thin(h float64) float64 {
 	a := &r.t
 	return (a[1] + x*(2*a[2]+x*3*a[3])) * per
 }
+
+// sharp tells whether ice forms all but at one temperature: half of what leaves over ten degrees leaves in the first twentieth of one.
+func (l *law) sharp() bool {
+	return l.heat(l.zeroC-0.05) < 0.5*l.heat(l.zeroC-10)
+}

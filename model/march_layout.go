@@ -38,7 +38,13 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 	if kind == radial || kind == spherical {
 		crowd = roundCrowd
 	}
-	g := newLineGrid(s.product, kind, r, e.volumes(lineNodes), crowd)
+	n := lineNodes
+	for _, l := range laws {
+		if l.sharp() {
+			n = sharpNodes
+		}
+	}
+	g := newLineGrid(s.product, kind, r, e.volumes(n), crowd)
 	m := newLineMarch(g, laws)
 	m.lower, m.upper = s.faces[0][0], s.faces[0][1]
 	m.fill(s.product.StartC)
@@ -190,5 +196,8 @@ func (s *solver) lawsOf() []*law {
 
 // lineNodes is how many volumes a half axis gets at first, cutNodes how many by the number of axes where a front moves through more than one.
 const lineNodes = 42
+
+// sharpNodes is how many a half axis gets whose ice forms all but at one temperature, so that a volume turns at once.
+const sharpNodes = 84
 
 var cutNodes = [4]int{2: 22, 3: 14}

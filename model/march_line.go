@@ -146,6 +146,7 @@ type lineMarch struct {
 	h1, h2, u1, u2            []float64
 	b, f0, f1, f2             []float64  // W/m²
 	mean, meanU, meanF, meanA []float64  // of the last look: mean heat content, its slopes by u, and by that of the node before and of the node after
+	mid, wide                 []float64  // of the last look: u in the middle of a volume, and half of the u in it
 	temp, tempU               []float64  // of the last look, at faces and joints: temperature, its slope by u
 	low, diag, up, delta      []float64  // the three diagonals and the right side
 	qs                        [2]float64 // flow over each face at the end of the last solve, W/m²: of the equations that were solved, so that what comes in is what is gained
@@ -158,10 +159,13 @@ func newLineMarch(g *lineGrid, laws []*law) *lineMarch {
 	m := &lineMarch{lineGrid: g, laws: laws}
 	n := len(g.x)
 	for _, s := range []*[]float64{&m.spread, &m.fore, &m.aft, &m.h, &m.u, &m.rate, &m.c, &m.slope, &m.uRate, &m.rate2, &m.c2, &m.slope2, &m.uRate2,
-		&m.h1, &m.h2, &m.u1, &m.u2, &m.b, &m.f0, &m.f1, &m.f2, &m.mean, &m.meanU, &m.meanF, &m.meanA, &m.temp, &m.tempU, &m.low, &m.diag, &m.up, &m.delta} {
+		&m.h1, &m.h2, &m.u1, &m.u2, &m.b, &m.f0, &m.f1, &m.f2, &m.mean, &m.meanU, &m.meanF, &m.meanA, &m.mid, &m.wide, &m.temp, &m.tempU, &m.low, &m.diag, &m.up, &m.delta} {
 		*s = make([]float64, n)
 	}
 	for _, p := range g.parts {
+		if laws[g.food[p[0]]].sharp() {
+			continue
+		}
 		m.within(p)
 	}
 	return m
@@ -229,6 +233,7 @@ func (m *lineMarch) look(u []float64) {
 			if d < leastSpread {
 				d, sign = leastSpread, 0
 			}
+			m.mid[i], m.wide[i] = c, d
 			mean, slope, wide := l.mean(c, d)
 			wide *= sign
 			m.mean[i], m.meanF[i], m.meanA[i] = mean, slope*m.fore[i]-wide, slope*m.aft[i]+wide
@@ -305,23 +310,48 @@ func (m *lineMarch) begin(tau float64) {
 	m.temperatures(m.u, m.rate, m.c, m.slope, m.uRate)
 }
 
-// Newton's method ends with a correction this small, K, or, where no node passed its freezing point, with one whose square is.
+// Newton's method ends with a correction this small, K, or, where nothing freezes or melts, with one whose square is.
 const newtonK, newtonSmoothK = 1e-4, 5e-3
 
 // unfrozenK is the conductivity that turns Kirchhoff integrals into temperatures where only their size counts, W/(m·K): below that of any
 // food that freezes, so that temperatures come out large.
 const unfrozenK = 0.2
 
-// moved gives u moved by d, with the slope of the heat content at hand: onto the side where freezing begins by as much heat as the slope gives it,
-// since the slope there is many times as large.
+// moved gives u moved by d, which was found with the slope of the heat content at the last look. Where ice forms or melts, slopes beside each other are
+// unlike by hundreds of times: there it goes no further than takes the heat that the slope says.
 func (m *lineMarch) moved(i int, u, d float64) float64 {
-	if to := u + d; d > 0 || to > 0 || u < -4*leastSpread {
-		return to
+	c, wide := m.mid[i], m.wide[i]
+	if d == 0 || min(c, c+d) > wide || math.Abs(d) < straightMove*(math.Abs(c)-wide) {
+		return u + d
 	}
-	l := m.laws[m.food[i]]
-	_, h := l.byU.sums(u)
-	return l.kirchhoff(h + m.meanU[i]*d)
+	l := m.laws[m.food[i]].byU
+	heat := m.meanU[i] * d
+	at := func(d float64) float64 {
+		h, _, _ := l.mean(c+d, wide)
+		return (h-m.mean[i])/heat - 1
+	}
+	lo, hi := 0.0, d
+	off := at(hi)
+	if off < 1 {
+		return u + d
+	}
+	below, x := -1.0, 0.0
+	for try := 0; try < 12; try++ { // false position, each end's weight halved when the other stays (Illinois)
+		x = (lo*off - hi*below) / (off - below)
+		if y := at(x); y > 0 {
+			hi, off, below = x, y, below/2
+		} else {
+			lo, below, off = x, y, off/2
+		}
+		if math.Abs(hi-lo) < 0.1*math.Abs(lo) {
+			break
+		}
+	}
+	return u + x
 }
+
+// straightMove is how far u may move by its own size with the slope at hand where there is ice.
+const straightMove = 0.02
 
 // solve finds the u of w·h(u) = b + a·F(u) at tau, from u on, and h; it says whether it did.
 
@@ -364,24 +394,20 @@ func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
 			}
 		}
 		m.factor(m.delta)
-		worst, passed := 0.0, false
+		worst, bent := 0.0, false
 		for i, d := range m.delta {
-			to := u[i] + d
-			if d < 0 && to < 0 {
-				to = m.moved(i, u[i], d)
-			}
-			passed = passed || (u[i] < 0) != (to < 0)
+			to := m.moved(i, u[i], d)
+			bent = bent || to != u[i]+d || m.mid[i] < m.wide[i]
 			u[i] = to
-			if d = math.Abs(d); !(d <= worst) {
+			if d = math.Abs(d) * max(1/unfrozenK, m.meanU[i]*heatCounts); !(d <= worst) {
 				if worst = d; math.IsNaN(d) {
 					return false
 				}
 			}
 		}
-		worst /= unfrozenK
 		m.qs[0] += slope[0] * m.delta[0]
 		m.qs[1] += slope[1] * m.delta[n-1]
-		if worst < newtonK || worst < newtonSmoothK && !passed {
+		if worst < newtonK || worst < newtonSmoothK && !bent {
 			m.contents(h, u)
 			return true
 		}
@@ -561,10 +587,9 @@ func (m *lineMarch) temperatures(u, rate, c, slope, uRate []float64) {
 func (m *lineMarch) fill(c float64) {
 	for i := range m.h {
 		l := m.laws[m.food[i]]
-		m.u[i] = l.kirchhoff(l.heat(c))
+		m.h[i] = l.heat(c)
+		m.u[i] = l.kirchhoff(m.h[i])
 	}
-	m.look(m.u)
-	copy(m.h, m.mean)
 }
 
 func (m *lineMarch) surround(skins func(*Face) *skin) {
