@@ -5,6 +5,8 @@ import (
 	"math"
 	"strconv"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 
 	"slowpoint/model"
 	"slowpoint/model/unit"
@@ -49,6 +51,24 @@ func decimal(v float64, decimals int, r rounding) string {
 func plain(v float64, decimals int, r rounding) string {
 	s := strconv.FormatFloat(r.round(v, decimals), 'f', -1, 64)
 	return strings.Replace(s, "-", "−", 1)
+}
+
+// sentence gives a remark a capital and a full stop, as the remarks of the prediction have neither; "" stays "".
+func sentence(s string) string {
+	if s == "" {
+		return ""
+	}
+	s = capital(s)
+	if strings.HasSuffix(s, ".") {
+		return s
+	}
+	return s + "."
+}
+
+// capital makes the first letter of a text large.
+func capital(s string) string {
+	first, n := utf8.DecodeRuneInString(s)
+	return string(unicode.ToUpper(first)) + s[n:]
 }
 
 // fahrenheit turns °C into °F.

@@ -69,7 +69,7 @@ func (x *sheet) headline() string {
 	switch {
 	case f == nil || f.Limit == nil:
 		if x.p.Judgement.Why != "" {
-			return say("headline why", x.p.Judgement.Why)
+			return sentence(x.p.Judgement.Why)
 		}
 		return say("headline none")
 	case f.Verdict == rules.CannotTell:
@@ -613,7 +613,7 @@ func (x *sheet) cardRows(f *rules.Finding) [][2]string {
 	}
 	return [][2]string{
 		{say("card asks"), say("card asks line", ruleName(l), h.asks(l), stages(l), whereAsked(l), f.Level) + x.cardCells(f)},
-		{say("card found"), joined(value, f.Why)},
+		{say("card found"), found(value, f.Why)},
 		{say("card margin"), x.marginWords(f)},
 		{say("card place"), x.placeAndTime(f)},
 		{say("card clock"), x.clockWords(f)},
@@ -726,6 +726,14 @@ func (x *sheet) clockWords(f *rules.Finding) string {
 		ran += x.inRun(f)
 	}
 	return joined(words, ran)
+}
+
+// found is a value with the sentence on it.
+func found(value, why string) string {
+	if value == "" || why == "" {
+		return value + why
+	}
+	return value + ". " + capital(why)
 }
 
 func joined(parts ...string) string {
@@ -968,7 +976,7 @@ func (x *sheet) moves() string {
 			out = append(out, say("moves", sp.Step.Name, what, first, last))
 		}
 	}
-	return say("moves sentence", strings.Join(out, "; "), x.decides.placeName)
+	return say("moves sentence", capital(strings.Join(out, "; ")), x.decides.placeName)
 }
 
 // profileSentence gives surface and middle at each time of the profile.
@@ -983,9 +991,10 @@ func (x *sheet) profileSentence(times []float64) string {
 		}
 		s = append(s, say(way.words, args...))
 	}
-	out := say("profile sentence", strings.Join(s, "; "))
+	all := capital(strings.Join(s, "; "))
+	out := say("profile sentence", all)
 	if x.p.Product.Shape == model.Spheroid {
-		out = say("profile sentence spheroid", strings.Join(s, "; "))
+		out = say("profile sentence spheroid", all)
 	}
 	if x.p.Product.Shape == model.LayeredSlab {
 		out += say("profile joints")
