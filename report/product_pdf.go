@@ -976,7 +976,11 @@ func (x *sheet) moves() string {
 			out = append(out, say("moves", sp.Step.Name, what, first, last))
 		}
 	}
-	return say("moves sentence", capital(strings.Join(out, "; ")), x.decides.placeName)
+	all := say("moves sentence", capital(strings.Join(out, "; ")), x.decides.placeName)
+	if shape == model.LayeredSlab { // no column tells a pack from a food
+		all += say("moves layers")
+	}
+	return all
 }
 
 // profileSentence gives surface and middle at each time of the profile.

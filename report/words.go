@@ -285,6 +285,7 @@ var words = map[string]string{
 	"table usual":               "The table and the next sentence are of the %s.",
 	"moves stirred":             "The content is mixed throughout: all places have the same temperature.",
 	"moves sentence":            "%s. The place that decides the tightest limit: %s.",
+	"moves layers":              " Every layer counts as food: a tin or a pack that was typed as a layer is looked at and judged like the food in it.",
 	"moves not":                 "in %s the %s place stays at: %s",
 	"moves":                     "in %s the %s place moves from: %s, to: %s",
 	"coldest":                   "coldest",
