@@ -306,5 +306,5 @@ func (h *Head) errorWords(k float64) string {
 	if k < 0.1 {
 		decimals = 3
 	}
-	return h.first(plain(k, decimals, up)+" °C", plain(k*1.8, decimals, up)+" °F")
+	return h.first(plain(k, decimals, up)+" °C", plain(differenceF.Out(k), decimals, up)+" °F")
 }

@@ -1017,19 +1017,13 @@ func (x *sheet) sizes() string {
 	}
 	var s []string
 	for _, need := range p.Needs {
-		switch need {
-		case "Thickness":
-			s = append(s, say("size thickness")+" "+length(&x.p.Product, z.ThicknessM))
-		case "Width":
-			s = append(s, say("size width")+" "+length(&x.p.Product, z.WidthM))
-		case "Length":
-			s = append(s, say("size length")+" "+length(&x.p.Product, z.LengthM))
-		case "Diameter":
-			s = append(s, say("size diameter")+" "+length(&x.p.Product, z.DiameterM))
+		switch v := *z.Of(need); need {
 		case "Volume":
-			s = append(s, say("size volume", plain(z.VolumeM3*1000, 3, nearest)))
+			s = append(s, say("size volume", plain(v*1000, 3, nearest)))
 		case "Surface area":
-			s = append(s, say("size area", plain(z.AreaM2, 4, nearest)))
+			s = append(s, say("size area", plain(v, 4, nearest)))
+		default:
+			s = append(s, say("size "+strings.ToLower(need))+" "+length(&x.p.Product, v))
 		}
 	}
 	if p == model.LayeredSlab {
