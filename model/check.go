@@ -88,10 +88,8 @@ func (c *checker) shape() {
 		c.add(p.At, "Shape", p.Shape.Name, p.Shape.Refused,
 			"use the nearest shape on the slow side: the thickest part as a slab or cylinder, with the fewest cooled faces")
 	}
-	size := map[string]float64{"Thickness": p.Size.ThicknessM, "Width": p.Size.WidthM, "Length": p.Size.LengthM,
-		"Diameter": p.Size.DiameterM, "Volume": p.Size.VolumeM3, "Surface area": p.Size.AreaM2}
 	for _, need := range p.Shape.Needs {
-		if v := size[need]; !(v > 0) || math.IsInf(v, 0) {
+		if v := *p.Size.Of(need); !(v > 0) || math.IsInf(v, 0) {
 			c.add(p.At, need, "", fmt.Sprintf("a %s needs %s, a number above 0", p.Shape.Name, need), "")
 		}
 	}

@@ -38,6 +38,28 @@ type Size struct {
 	VolumeM3, AreaM2                       float64 // stirred only
 }
 
+// SizeColumns are the columns of the sizes, as a shape's Needs names them.
+var SizeColumns = []string{"Thickness", "Width", "Length", "Diameter", "Volume", "Surface area"}
+
+// Of is the size of a column; nil if there is none of that name.
+func (z *Size) Of(column string) *float64 {
+	switch column {
+	case "Thickness":
+		return &z.ThicknessM
+	case "Width":
+		return &z.WidthM
+	case "Length":
+		return &z.LengthM
+	case "Diameter":
+		return &z.DiameterM
+	case "Volume":
+		return &z.VolumeM3
+	case "Surface area":
+		return &z.AreaM2
+	}
+	return nil
+}
+
 // Place is a position in the food, from its geometric centre, in m.
 // Up: along the thickness (slab, bar, brick), along the axis (short cylinder), along the radius (sphere, cylinder).
 // Across: along the width or, with an axis, along the radius. Along: along the length. Unused ones are 0.

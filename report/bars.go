@@ -48,7 +48,7 @@ func (d *doc) marginBars(fs []*rules.Finding) {
 		d.put(d.left+barNames+2*barPanel, d.y+h/2+1.2, word, small, true)
 		d.bar(d.left+barNames, d.y, h, f.MarginK, k, f.Verdict, func(v float64) string {
 			if d.head.Fahrenheit {
-				return decimal(v*1.8, 1, down) + " °F"
+				return decimal(differenceF.Out(v), 1, down) + " °F"
 			}
 			return decimal(v, 1, down) + " °C"
 		})

@@ -1,6 +1,7 @@
 package report
 
 import (
+	"fmt"
 	"math"
 	"slices"
 	"strings"
@@ -17,7 +18,12 @@ func (x *sheet) basis() {
 	d.heading(say("factors title"), 1, 25)
 	d.text(say("factors note"))
 	rows := x.factors()
-	d.grouped([]col{{title: say("col factor"), wide: 32, bold: true}, {title: say("col used"), wide: 78}, {title: say("col from"), wide: 70}}, rows, small, func(i int) bool { return i+1 < len(rows) && rows[i+1][0] != "" })
+	for i, r := range rows {
+		if rows[i] = r[:2]; r[2] != "" {
+			rows[i][1] = say("factor from", r[1], r[2])
+		}
+	}
+	d.grouped([]col{{title: say("col factor"), wide: 32, bold: true}, {title: say("col used"), wide: frameWide - 32}}, rows, small, func(i int) bool { return i+1 < len(rows) && rows[i+1][0] != "" })
 	x.properties()
 	d.heading(say("method title"), 1, 20)
 	if p.History != nil {
@@ -68,7 +74,7 @@ func (x *sheet) factors() [][]string {
 	if p.Product.Shape != nil {
 		shape = p.Product.Shape.Name
 	}
-	add(say("factor shape"), joined(shape, x.sizes()), x.from("Shape", "Thickness", "Width", "Length", "Diameter", "Volume", "Surface area"))
+	add(say("factor shape"), joined(shape, x.sizes()), x.from(append([]string{"Shape"}, model.SizeColumns...)...))
 	add(say("factor start"), h.stated(p.Product.StartC), x.from("Start temperature"))
 	for _, m := range p.Product.Foods() {
 		add(say("factor food"), joined(m.Name, m.Composition), m.Source)
@@ -208,7 +214,7 @@ func (x *sheet) exposure(e *model.Exposure) string {
 // warnings are the cautions of this run.
 func (x *sheet) warnings() {
 	d := x.doc
-	d.heading(say("cautions title"), 0, 30)
+	d.heading(say("cautions title"), 0, 20)
 	d.text(say("cautions note"))
 	for _, c := range x.cautions {
 		d.item("•", c.Text, body)
@@ -233,7 +239,8 @@ func (x *sheet) readings() {
 	d.text(say("input note"))
 	var rows [][]string
 	var cells []cell.Reading
-	rs, carded := x.p.Readings, x.carded()
+	rs, blanks := blanksTogether(x.p.Readings)
+	carded := x.carded()
 	for i := range rs {
 		row := rs[i].At
 		if row.Col = 0; !carded[row] || !slices.Contains(onCard, rs[i].Column) {
@@ -244,7 +251,84 @@ func (x *sheet) readings() {
 			cells = cells[:0]
 		}
 	}
-	d.table([]col{{title: say("col row"), wide: 30, bold: true}, {title: say("col cells"), wide: frameWide - 30}}, rows, small)
+	d.table([]col{{title: say("col row"), wide: 30, bold: true}, {title: say("col cells"), wide: frameWide - 30}}, append(rows, blanks...), small)
+}
+
+// blanksTogether takes out of the readings the defaults that stood in for blank cells of one column in three rows or more, and tells
+// each once with its rows: a line of the echo for each sheet.
+func blanksTogether(rs []cell.Reading) (left []cell.Reading, lines [][]string) {
+	type same struct {
+		sheet string
+		col   int
+		used  string
+	}
+	of := func(r *cell.Reading) same { return same{r.At.Sheet, r.At.Col, joined(r.Used, defaultWhy(r))} }
+	rows := map[same][]int{}
+	for i := range rs {
+		if r := &rs[i]; r.Typed == "" && r.From == "" && r.At.Row > 0 && !slices.Contains(rows[of(r)], r.At.Row) {
+			rows[of(r)] = append(rows[of(r)], r.At.Row)
+		}
+	}
+	line := map[string]int{}
+	told := map[same]bool{}
+	for i := range rs {
+		r := &rs[i]
+		k := of(r)
+		if r.Typed != "" || r.From != "" || len(rows[k]) < 3 {
+			left = append(left, *r)
+			continue
+		}
+		if told[k] {
+			continue
+		}
+		told[k] = true
+		words := say("echo blanks", echoName(r), k.used, rowRanges(rows[k]))
+		if n, has := line[k.sheet]; has {
+			lines[n][1] += " · " + words
+		} else {
+			line[k.sheet] = len(lines)
+			lines = append(lines, []string{say("echo blank cells", k.sheet), words})
+		}
+	}
+	return left, lines
+}
+
+// rowRanges writes rows of a sheet, those that follow each other as a range.
+func rowRanges(rows []int) string {
+	slices.Sort(rows)
+	var s []string
+	for i := 0; i < len(rows); {
+		k := i
+		for k+1 < len(rows) && rows[k+1] == rows[k]+1 {
+			k++
+		}
+		switch {
+		case k == i:
+			s = append(s, fmt.Sprint(rows[i]))
+		case k == i+1:
+			s = append(s, fmt.Sprint(rows[i]), fmt.Sprint(rows[k]))
+		default:
+			s = append(s, fmt.Sprintf("%d–%d", rows[i], rows[k]))
+		}
+		i = k + 1
+	}
+	return strings.Join(s, ", ")
+}
+
+// echoName is a cell's column, letter first.
+func echoName(r *cell.Reading) string {
+	if r.At.Col > 0 {
+		return cell.ColumnName(r.At.Col) + " " + r.Column
+	}
+	return r.Column
+}
+
+// defaultWhy is why a value was used, but for what "(blank)" and the arrow say already.
+func defaultWhy(r *cell.Reading) string {
+	if strings.HasPrefix(r.Why, "blank:") {
+		return ""
+	}
+	return r.Why
 }
 
 // onCard are the columns of a limit that stand on its card word for word.
@@ -269,18 +353,11 @@ func echoed(rs []cell.Reading) string {
 	blanks, before := "", ""
 	for i := range rs {
 		r := &rs[i]
-		name := r.Column
-		if r.At.Col > 0 {
-			name = cell.ColumnName(r.At.Col) + " " + name
-		}
+		name := echoName(r)
 		if r.From != "" {
 			name += " (" + strings.TrimPrefix(r.From, source+"!") + ")"
 		}
-		why := r.Why
-		if strings.HasPrefix(why, "blank:") { // says the same as "(blank)" and the arrow
-			why = ""
-		}
-		used := joined(r.Used, why)
+		used := joined(r.Used, defaultWhy(r))
 		if r.Typed == "" && blanks != "" && used == before {
 			blanks += ", " + name
 			out[len(out)-1] = say("echo default", blanks, used)
@@ -334,24 +411,30 @@ var changeKeys = []string{"recipe", "size", "supplier", "equipment", "load", "se
 // changes are the reasons to look at the process again, with boxes to tick.
 func (x *sheet) changes() {
 	d := x.doc
-	d.heading(say("changes title"), 0, 60)
+	d.heading(say("changes title"), 0, 30)
 	d.text(say("changes note"))
 	for _, k := range changeKeys {
 		d.item("☐", say("change "+k), body)
 	}
 }
 
-// deviation is a page of blanks: the decision is not the program's.
+// deviation is a form of blanks: the decision is not the program's. It is never split; below the end of the glossary it has a line
+// less for each answer rather than a page of its own.
 func (x *sheet) deviation() {
 	d := x.doc
-	d.page()
+	const line = 7.5
+	keys, lines := []string{"what", "cause", "held", "disposition", "prevention", "records"}, 2
+	if titles := 54.0; d.y+titles+float64(len(keys))*(2+height(body)+float64(lines)*line) > bottomY {
+		d.page()
+		lines = 3
+	}
 	d.heading(say("deviation title"), 0, 60)
 	d.text(say("deviation note"))
-	for _, k := range []string{"what", "cause", "held", "disposition", "prevention", "records"} {
+	for _, k := range keys {
 		d.y += 2
 		d.para(say("deviation "+k), style{size: body, bold: true, after: 0})
-		for range [...]int{0, 1, 2} {
-			d.y += 7.5
+		for range lines {
+			d.y += line
 			d.rule(d.left, d.left+frameWide, d.y, 0.7)
 		}
 	}
@@ -371,7 +454,7 @@ func (x *sheet) glossary() {
 	for _, k := range glossaryKeys {
 		p = append(p, [2]string{say("word " + k), say("means " + k)})
 	}
-	d.pairs(p[:rows], 40)
+	d.pairs(p[:rows], 34)
 }
 
 // ProblemsOf gives the problems that touch a product: its rows, its limits', and those of the whole plan. Faults are not among them.

@@ -88,7 +88,7 @@ func Cautions(h *Head, p *Product) []Caution {
 			return
 		}
 		seen[key] = true
-		text := key
+		text := sentence(key)
 		if _, known := words["caution "+key]; known {
 			text = say("caution " + key)
 		}
@@ -102,12 +102,21 @@ func Cautions(h *Head, p *Product) []Caution {
 	if p.History != nil {
 		for _, sp := range p.History.Spans {
 			for _, f := range sp.Films {
-				add(f.Caution)
+				add(remarks(f.Caution, seen["film coefficient assumed"]))
 			}
 		}
 		add(p.History.Bound)
 	}
 	return out
+}
+
+// remarks are those of the prediction on a film, without the one that a caution of the table makes with the names of the steps.
+func remarks(s string, assumed bool) string {
+	const same = "film coefficient assumed, not measured"
+	if rest, has := strings.CutPrefix(s, same); has && assumed {
+		return strings.TrimPrefix(rest, "; ")
+	}
+	return s
 }
 
 // stepsWhere is a trigger that names the steps for which something holds.
@@ -297,5 +306,5 @@ func (h *Head) errorWords(k float64) string {
 	if k < 0.1 {
 		decimals = 3
 	}
-	return h.first(plain(k, decimals, up)+" °C", plain(k*1.8, decimals, up)+" °F")
+	return h.first(plain(k, decimals, up)+" °C", plain(differenceF.Out(k), decimals, up)+" °F")
 }

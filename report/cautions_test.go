@@ -103,7 +103,13 @@ func TestCautions(t *testing.T) {
 		{"carried by a finding", func(_ *Head, p *Product) {
 			p.Judgement.Findings[0].Cautions = []string{"slow come-up lethality", "slow come-up lethality", "a new one"}
 		}, always + ", slow come-up lethality, a new one", "More than a tenth"},
-		{"carried by a film", func(_ *Head, p *Product) { p.History.Spans[0].Films[0].Caution = "published for dry air only" }, always + ", published for dry air only", ""},
+		{"carried by a film", func(_ *Head, p *Product) { p.History.Spans[0].Films[0].Caution = "published for dry air only" }, always + ", published for dry air only", "Published for dry air only."},
+		{"said with the names of the steps already", func(_ *Head, p *Product) {
+			p.History.Spans[0].Films[0].Typed, p.History.Spans[0].Films[0].Caution = false, "film coefficient assumed, not measured"
+		}, "film coefficient assumed, " + always, "correlation: Oven"},
+		{"half of it said already", func(_ *Head, p *Product) {
+			p.History.Spans[0].Films[0].Typed, p.History.Spans[0].Films[0].Caution = false, "film coefficient assumed, not measured; emissivity assumed: 0.9"
+		}, "film coefficient assumed, " + always + ", emissivity assumed: 0.9", "Emissivity assumed: 0.9."},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			h, p := &Head{}, calm(t)

@@ -1047,7 +1047,7 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 	times := profileTimes(hist)
 	in := unit.Length.Unit("mm")
 	if p.Product.Inches {
-		in = unit.Length.Unit("in")
+		in = inch
 	}
 	f := &chart{xName: say(way.name, in.Name()), yName: say("axis temperature", h.degree()), x0: in.Out(way.m[0]), x1: in.Out(way.m[len(way.m)-1]), size: size, ends: ends}
 	f.xTicks = marks(ticksTo(f.x0, f.x1, []float64{0.1, 0.25, 0.5, 1, 2, 5, 10, 20, 25, 50, 100, 200}, 9))

@@ -183,7 +183,7 @@ type Row struct {
 
 // Row gives the product's line of the overview.
 func (p *Product) Row() Row {
-	r := Row{Product: p.Product.Name, Process: p.Process, Verdict: p.Judgement.Verdict, Why: p.Judgement.Why, tight: math.Inf(1)}
+	r := Row{Product: p.Product.Name, Process: p.Process, Verdict: p.Judgement.Verdict, Why: sentence(p.Judgement.Why), tight: math.Inf(1)}
 	if d := p.decides(); d.finding != nil {
 		f := d.finding
 		g := p.telling(f)

@@ -5,6 +5,8 @@ import (
 	"math"
 	"strconv"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 
 	"slowpoint/model"
 	"slowpoint/model/unit"
@@ -51,8 +53,33 @@ func plain(v float64, decimals int, r rounding) string {
 	return strings.Replace(s, "-", "−", 1)
 }
 
+// sentence gives a remark a capital and a full stop, as the remarks of the prediction have neither; "" stays "".
+func sentence(s string) string {
+	if s == "" {
+		return ""
+	}
+	s = capital(s)
+	if strings.HasSuffix(s, ".") {
+		return s
+	}
+	return s + "."
+}
+
+// capital makes the first letter of a text large.
+func capital(s string) string {
+	first, n := utf8.DecodeRuneInString(s)
+	return string(unicode.ToUpper(first)) + s[n:]
+}
+
+// The units that the documents write beside those that the program computes in; a difference scales and never shifts.
+var (
+	degreeF     = unit.Temperature.Unit("°F")
+	differenceF = unit.Difference.Unit("°F difference")
+	inch        = unit.Length.Unit("in")
+)
+
 // fahrenheit turns °C into °F.
-func fahrenheit(c float64) float64 { return c*1.8 + 32 }
+func fahrenheit(c float64) float64 { return degreeF.Out(c) }
 
 // temperature writes a calculated temperature (°C) in the user's unit with the other in brackets: "74.1 °C (165.4 °F)".
 func (h *Head) temperature(c float64, r rounding) string {
@@ -62,7 +89,7 @@ func (h *Head) temperature(c float64, r rounding) string {
 
 // difference writes a difference (K) likewise: "5.0 °C (9.0 °F)".
 func (h *Head) difference(k float64, r rounding) string {
-	inC, inF := decimal(k, 1, r)+" °C", decimal(k*1.8, 1, r)+" °F"
+	inC, inF := decimal(k, 1, r)+" °C", decimal(differenceF.Out(k), 1, r)+" °F"
 	return h.first(inC, inF)
 }
 
@@ -124,7 +151,7 @@ func length(p *model.Product, m float64) string {
 // ownLength is length without the brackets.
 func ownLength(p *model.Product, m float64) string {
 	if p.Inches {
-		return plain(unit.Length.Unit("in").Out(m), 3, nearest) + " in"
+		return plain(inch.Out(m), 3, nearest) + " in"
 	}
 	return mm(m)
 }
@@ -183,7 +210,7 @@ func (h *Head) quantity(f *rules.Finding, v *float64, asked bool) string {
 		return h.temperature(*v, r)
 	case "K":
 		if asked {
-			return h.first(plain(*v, 2, nearest)+" °C", plain(*v*1.8, 2, nearest)+" °F")
+			return h.first(plain(*v, 2, nearest)+" °C", plain(differenceF.Out(*v), 2, nearest)+" °F")
 		}
 		return h.difference(*v, r)
 	case "log10":

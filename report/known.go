@@ -138,6 +138,6 @@ func (d *doc) knownTable(ks []KnownAnswer) {
 	if len(rows) == 0 {
 		return
 	}
-	d.grouped([]col{{title: say("col case"), wide: 66}, {title: say("col expected"), wide: 32}, {title: say("col got"), wide: 32},
-		{title: say("col allowance"), wide: 32}, {title: say("col within"), wide: 18}}, rows, small, func(i int) bool { return i+1 < len(rows) && len(rows[i+1]) == 1 })
+	d.grouped([]col{{title: say("col case"), wide: 78}, {title: say("col expected"), wide: 28}, {title: say("col got"), wide: 28},
+		{title: say("col allowance"), wide: 28}, {title: say("col within"), wide: 18}}, rows, small, func(i int) bool { return i+1 < len(rows) && len(rows[i+1]) == 1 })
 }

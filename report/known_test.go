@@ -2,6 +2,7 @@ package report
 
 import (
 	"math"
+	"reflect"
 	"slices"
 	"strings"
 	"testing"
@@ -156,5 +157,48 @@ func TestEcho(t *testing.T) {
 	text := pdfText(t, productPDF(t, h, p))
 	if strings.Count(text, "first note") != 1 || strings.Count(text, "second note") != 1 {
 		t.Errorf("the notes stand %d and %d times", strings.Count(text, "first note"), strings.Count(text, "second note"))
+	}
+}
+
+// A default that stood in three rows or more of a sheet is told once with its rows; nothing else leaves its row.
+func TestBlanksTogether(t *testing.T) {
+	at := func(sheet string, row, col int) cell.Ref { return cell.Ref{Sheet: sheet, Row: row, Col: col} }
+	var rs []cell.Reading
+	for _, row := range []int{2, 3, 4, 7, 9, 10} {
+		rs = append(rs, cell.Reading{At: at("Limits", row, 5), Column: "Where", Used: "every point", Why: "blank: every point is taken"},
+			cell.Reading{At: at("Limits", row, 3), Column: "Rule", Typed: "hold", Used: "hold"})
+	}
+	rs = append(rs, cell.Reading{At: at("Limits", 11, 5), Column: "Where", Typed: "every point", Used: "every point"},
+		cell.Reading{At: at("Limits", 12, 5), Column: "Where", Used: "every point", From: "mine.xlsx!A1"},
+		cell.Reading{At: at("Limits", 2, 6), Column: "Level", Used: "must"}, cell.Reading{At: at("Limits", 3, 6), Column: "Level", Used: "must"})
+	for row := 5; row > 2; row-- {
+		rs = append(rs, cell.Reading{At: at("Steps", row, 5), Column: "Cover", Used: "open", Why: "the usual"})
+	}
+	left, lines := blanksTogether(rs)
+	if want := [][]string{{"Limits, blank cells", "E Where: (blank) → every point in rows 2–4, 7, 9, 10"}, {"Steps, blank cells", "E Cover: (blank) → open; the usual in rows 3–5"}}; !reflect.DeepEqual(lines, want) {
+		t.Errorf("%q, want %q", lines, want)
+	}
+	for _, r := range left {
+		if r.Typed == "" && r.From == "" && r.Column != "Level" {
+			t.Errorf("%v is told twice", r)
+		}
+	}
+	if len(left) != len(rs)-9 {
+		t.Errorf("%d cells of %d stay in their rows, want %d", len(left), len(rs), len(rs)-9)
+	}
+}
+
+// The form for deviations stands on one page, wherever the glossary ends: with less room to write rather than split.
+func TestDeviationForm(t *testing.T) {
+	ends := map[int]map[float64]bool{1: {}, 2: {}}
+	for at := 20.0; at < 60; at += 0.5 { // the last place that has room is about 40 mm down
+		d := newDoc(roastHead(), "x")
+		d.page()
+		d.y += at
+		(&sheet{doc: d}).deviation()
+		ends[d.pdf.pages()][math.Round((d.y-btof(d.pdf.pages() == 1)*at)*10)/10] = true
+	}
+	if len(ends[1]) != 1 || len(ends[2]) != 1 {
+		t.Errorf("the form is split: it ends at %v mm below where it began, on a page of its own at %v", ends[1], ends[2])
 	}
 }

@@ -38,7 +38,7 @@ func (h *Head) typedDifference(l *rules.Limit, heading string, k *float64) strin
 	if k == nil {
 		return ""
 	}
-	inC, inF := plain(*k, 2, nearest)+" °C", plain(*k*1.8, 2, nearest)+" °F"
+	inC, inF := plain(*k, 2, nearest)+" °C", plain(differenceF.Out(*k), 2, nearest)+" °F"
 	if strings.Contains(l.Typed[heading], "F") {
 		return inF + " (" + inC + ")"
 	}

@@ -22,7 +22,7 @@ const (
 	small   = 9.0
 	body    = 9.5
 	kitchen = 11.0 // the least on the page for the operator
-	leading = 1.28 // line height over type size
+	leading = 1.22 // line height over type size
 )
 
 // doc is a document being written: a page, a position on it, and what the running titles will say.

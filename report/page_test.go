@@ -277,3 +277,15 @@ func TestThinned(t *testing.T) {
 		}
 	}
 }
+
+// A remark of the prediction becomes a sentence; the words of a verdict are never spelled another way.
+func TestSentence(t *testing.T) {
+	for _, c := range []struct{ name, in, want string }{
+		{"nothing", "", ""}, {"a remark", "no limit judged", "No limit judged."}, {"a sentence", "Nothing was above 80 °C.", "Nothing was above 80 °C."},
+		{"a remark with a full stop", "no limit judged: A did not apply.", "No limit judged: A did not apply."}, {"not of the alphabet", "×2", "×2."}, {"with an accent", "über", "Über."},
+	} {
+		if got := sentence(c.in); got != c.want {
+			t.Errorf("%s: %q, want %q", c.name, got, c.want)
+		}
+	}
+}

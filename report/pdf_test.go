@@ -246,7 +246,7 @@ func TestProductPDF(t *testing.T) {
 			}
 		}, []string{"12 steps"}},
 		{"no history", model.Slab, rules.CannotTell, func(h *Head, p *Product) { p.History, p.Further, p.Samples = nil, nil, model.Samples{} }, []string{"CANNOT TELL"}},
-		{"no limits", model.Slab, rules.CannotTell, func(h *Head, p *Product) { p.Judgement = rules.Judgement{Why: "no limit judged"} }, []string{"no limit judged"}},
+		{"no limits", model.Slab, rules.CannotTell, func(h *Head, p *Product) { p.Judgement = rules.Judgement{Why: "no limit judged"} }, []string{"No limit judged."}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			h, p := roastHead(), roast(t, c.shape, c.verdict)

@@ -69,7 +69,7 @@ func (x *sheet) headline() string {
 	switch {
 	case f == nil || f.Limit == nil:
 		if x.p.Judgement.Why != "" {
-			return say("headline why", x.p.Judgement.Why)
+			return sentence(x.p.Judgement.Why)
 		}
 		return say("headline none")
 	case f.Verdict == rules.CannotTell:
@@ -600,8 +600,8 @@ func (x *sheet) card(f *rules.Finding) {
 		title += say("card run", run)
 	}
 	rows := x.cardRows(f)
-	d.section(say("card title", title, verdictWord(f.Verdict)), 2, min(d.pairsHeight(rows, 36)+1, 30), 1)
-	d.pairs(rows, 36)
+	d.section(say("card title", title, verdictWord(f.Verdict)), 2, min(d.pairsHeight(rows, 30)+1, 20), 1)
+	d.pairs(rows, 30)
 }
 
 // cardRows is everything about a limit and its finding as pairs of what and which; a blank one is left out.
@@ -612,8 +612,8 @@ func (x *sheet) cardRows(f *rules.Finding) [][2]string {
 		value = say("card value", value, h.quantity(f, f.Required, true))
 	}
 	return [][2]string{
-		{say("card asks"), say("card asks line", ruleName(l), h.asks(l), stages(l), whereAsked(l), f.Level)},
-		{say("card found"), joined(value, f.Why)},
+		{say("card asks"), say("card asks line", ruleName(l), h.asks(l), stages(l), whereAsked(l), f.Level) + x.cardCells(f)},
+		{say("card found"), found(value, f.Why)},
 		{say("card margin"), x.marginWords(f)},
 		{say("card place"), x.placeAndTime(f)},
 		{say("card clock"), x.clockWords(f)},
@@ -622,8 +622,15 @@ func (x *sheet) cardRows(f *rules.Finding) [][2]string {
 		{say("card ccp"), l.CCP},
 		{say("card hazard"), l.Hazard},
 		{say("card note"), l.Note},
-		{say("card cells"), x.refs(f.Cells)},
 	}
+}
+
+// cardCells are the cells of a limit and of the step that decides; "" if none is known.
+func (x *sheet) cardCells(f *rules.Finding) string {
+	if s := x.refs(f.Cells); s != "" {
+		return say("card cells", s)
+	}
+	return ""
 }
 
 // placeAndTime is where and when a finding is decided, and in which run.
@@ -700,23 +707,33 @@ func (x *sheet) cited(l *rules.Limit) string {
 	return s
 }
 
-// clockWords says when the clock starts, in words, and the instants at which it started and ended.
+// clockWords says when the clock starts, in words, and the instants at which it started and ended; in which run, unless the line
+// above, where and when the finding is decided, has said so.
 func (x *sheet) clockWords(f *rules.Finding) string {
-	words := x.head.clock(f.Limit)
-	var s []string
+	words, ran := x.head.clock(f.Limit), ""
 	if words != "" {
-		s = append(s, say("clock starts with", words))
+		words = say("clock starts with", words)
 	}
-	if finite(f.ClockStartS) {
-		s = append(s, say("clock started", duration(*f.ClockStartS, nearest)))
+	switch start, end := finite(f.ClockStartS), finite(f.ClockEndS); {
+	case start && end:
+		ran = say("clock ran", duration(*f.ClockStartS, nearest), duration(*f.ClockEndS, nearest))
+	case start:
+		ran = say("clock started", duration(*f.ClockStartS, nearest))
+	case end:
+		ran = say("clock ended", duration(*f.ClockEndS, nearest))
 	}
-	if finite(f.ClockEndS) {
-		s = append(s, say("clock ended", duration(*f.ClockEndS, nearest)))
+	if ran != "" && !finite(f.AtS) {
+		ran += x.inRun(f)
 	}
-	if len(s) > 0 && (finite(f.ClockStartS) || finite(f.ClockEndS)) {
-		return strings.Join(s, "; ") + x.inRun(f)
+	return joined(words, ran)
+}
+
+// found is a value with the sentence on it.
+func found(value, why string) string {
+	if value == "" || why == "" {
+		return value + why
 	}
-	return strings.Join(s, "; ")
+	return value + ". " + capital(why)
 }
 
 func joined(parts ...string) string {
@@ -746,22 +763,29 @@ func (x *sheet) predicted() {
 	if x.p.History == nil || x.p.History.Recorded {
 		return
 	}
-	d.heading(say("predicted title"), 0, 120)
+	sentence := x.slowestSentence() + " " + x.levelsSentence() + x.errorSentence()
+	// The chart gives way to the pages before it by a fifth, if some of its sentence then still stands below it.
+	const most, least, titles, lines = 90.0, 72.0, 31.0, 3
+	tall, below := most, float64(len(wrap(d.clean(sentence), frameWide, body, false)))*height(body)
+	if room := bottomY - d.y - titles; room-lines*height(body) >= least {
+		tall = min(most, max(least, room-below))
+	}
+	d.heading(say("predicted title"), 0, tall+25)
 	d.text(say("predicted note"))
-	d.heading(say("course title"), 1, 97)
-	h.history(x.p, x.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 90))
-	d.y += 91
-	d.text(x.slowestSentence() + " " + x.levelsSentence() + x.errorSentence())
+	d.heading(say("course title"), 1, tall+7)
+	h.history(x.p, x.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, tall))
+	d.y += tall + 1
+	d.text(sentence)
 	d.heading(say("slowest title"), 1, 30)
 	x.slowest()
 	if f, times := h.profile(x.p, x.decides, small, 84); f != nil {
-		d.heading(say("profile title"), 1, 72)
-		f.draw(d.canvas(d.left, d.y, frameWide, 58))
-		d.y += 59
+		d.heading(say("profile title"), 1, 68)
+		f.draw(d.canvas(d.left, d.y, frameWide, 54))
+		d.y += 55
 		d.text(x.profileSentence(times))
 	}
-	d.heading(say("sketch title"), 1, 52)
-	d.sketch(&x.p.Product, x.decides.place, x.decides.placeName, 42)
+	d.heading(say("sketch title"), 1, 48)
+	d.sketch(&x.p.Product, x.decides.place, x.decides.placeName, 38)
 	if x.p.Product.Shape == model.Stirred {
 		d.text(say("sketch sentence stirred", x.sizes()))
 		return
@@ -952,7 +976,11 @@ func (x *sheet) moves() string {
 			out = append(out, say("moves", sp.Step.Name, what, first, last))
 		}
 	}
-	return say("moves sentence", strings.Join(out, "; "), x.decides.placeName)
+	all := say("moves sentence", capital(strings.Join(out, "; ")), x.decides.placeName)
+	if shape == model.LayeredSlab { // no column tells a pack from a food
+		all += say("moves layers")
+	}
+	return all
 }
 
 // profileSentence gives surface and middle at each time of the profile.
@@ -967,9 +995,10 @@ func (x *sheet) profileSentence(times []float64) string {
 		}
 		s = append(s, say(way.words, args...))
 	}
-	out := say("profile sentence", strings.Join(s, "; "))
+	all := capital(strings.Join(s, "; "))
+	out := say("profile sentence", all)
 	if x.p.Product.Shape == model.Spheroid {
-		out = say("profile sentence spheroid", strings.Join(s, "; "))
+		out = say("profile sentence spheroid", all)
 	}
 	if x.p.Product.Shape == model.LayeredSlab {
 		out += say("profile joints")
@@ -988,19 +1017,13 @@ func (x *sheet) sizes() string {
 	}
 	var s []string
 	for _, need := range p.Needs {
-		switch need {
-		case "Thickness":
-			s = append(s, say("size thickness")+" "+length(&x.p.Product, z.ThicknessM))
-		case "Width":
-			s = append(s, say("size width")+" "+length(&x.p.Product, z.WidthM))
-		case "Length":
-			s = append(s, say("size length")+" "+length(&x.p.Product, z.LengthM))
-		case "Diameter":
-			s = append(s, say("size diameter")+" "+length(&x.p.Product, z.DiameterM))
+		switch v := *z.Of(need); need {
 		case "Volume":
-			s = append(s, say("size volume", plain(z.VolumeM3*1000, 3, nearest)))
+			s = append(s, say("size volume", plain(v*1000, 3, nearest)))
 		case "Surface area":
-			s = append(s, say("size area", plain(z.AreaM2, 4, nearest)))
+			s = append(s, say("size area", plain(v, 4, nearest)))
+		default:
+			s = append(s, say("size "+strings.ToLower(need))+" "+length(&x.p.Product, v))
 		}
 	}
 	if p == model.LayeredSlab {
@@ -1024,10 +1047,10 @@ func (x *sheet) measured() {
 	if rec {
 		d.page()
 	}
-	d.heading(say("measured title"), 0, 60)
+	d.heading(say("measured title"), 0, 43)
 	if !rec {
 		d.text(say("measured none"))
-		x.blankTable([]string{"blank date", "blank batch", "blank place", "blank start", "blank end", "blank logger", "blank initials"}, 4)
+		x.blankTable([]string{"blank date", "blank batch", "blank place", "blank start", "blank end", "blank logger", "blank initials"}, 3) // runs that are often asked for
 		return
 	}
 	d.text(say("measured note"))
@@ -1040,16 +1063,17 @@ func (x *sheet) measured() {
 func (x *sheet) blankTable(keys []string, n int) {
 	d := x.doc
 	w := frameWide / float64(len(keys))
-	const tall = 8.5
-	d.need(tall * float64(n+1))
+	const head, tall = 8.5, 7.5 // two lines of print, one of writing
+	d.need(head + tall*float64(n))
 	for i, k := range keys {
 		at := d.left + w*float64(i)
 		for j, s := range wrap(say(k), w-2, small, true) {
 			d.put(at+1.2, d.y+3.4+float64(j)*3.9, s, small, true)
 		}
-		for r := 0; r <= n; r++ {
-			d.frame(at, d.y+float64(r)*tall, w, tall, 0.7)
+		d.frame(at, d.y, w, head, 0.7)
+		for r := range n {
+			d.frame(at, d.y+head+float64(r)*tall, w, tall, 0.7)
 		}
 	}
-	d.y += tall*float64(n+1) + 3
+	d.y += head + tall*float64(n) + 3
 }

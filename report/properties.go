@@ -24,8 +24,8 @@ func (x *sheet) properties() {
 	}
 	d := x.doc
 	d.heading(say("properties title"), 1, 40)
-	d.grouped([]col{{title: say("col food"), wide: 42, bold: true}, {title: say("col temperature"), wide: 36}, {title: say("col conductivity"), wide: 27},
-		{title: say("col density"), wide: 26}, {title: say("col heat"), wide: 31}, {title: say("col ice"), wide: 18}}, rows, small, func(i int) bool { return i+1 < len(rows) && rows[i+1][0] != "" })
+	d.grouped([]col{{title: say("col food"), wide: 46, bold: true}, {title: say("col temperature"), wide: 33}, {title: say("col conductivity"), wide: 27},
+		{title: say("col density"), wide: 25}, {title: say("col heat"), wide: 31}, {title: say("col ice"), wide: 18}}, rows, small, func(i int) bool { return i+1 < len(rows) && rows[i+1][0] != "" })
 	d.text(x.propertiesSentence())
 }
 

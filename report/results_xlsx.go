@@ -378,7 +378,7 @@ func (h *Head) inUnit(c float64) float64 {
 // perK is how many of the user's degrees make 1 K.
 func (h *Head) perK() float64 {
 	if h.Fahrenheit {
-		return 1.8
+		return differenceF.Out(1)
 	}
 	return 1
 }

@@ -242,6 +242,12 @@ func TestLessFavourable(t *testing.T) {
 		{"equal time, less room", Finding{Verdict: NotMet, MarginS: c(-600), MarginK: c(-12)}, Finding{Verdict: NotMet, MarginS: c(-600), MarginK: c(-10)}, true},
 		{"equal time, more room", Finding{Verdict: NotMet, MarginS: c(-600), MarginK: c(-10)}, Finding{Verdict: NotMet, MarginS: c(-600), MarginK: c(-12)}, false},
 		{"no time", Finding{Verdict: Met, MarginK: c(1)}, Finding{Verdict: Met, MarginK: c(2)}, true},
+		{"a hair less time, less room", Finding{Verdict: Met, MarginS: c(599.95), MarginK: c(3)}, Finding{Verdict: Met, MarginS: c(600), MarginK: c(4)}, true},
+		{"a hair less time, more room", Finding{Verdict: Met, MarginS: c(599.95), MarginK: c(4)}, Finding{Verdict: Met, MarginS: c(600), MarginK: c(3)}, false},
+		{"a hair less time alone", Finding{Verdict: Met, MarginS: c(599.95)}, Finding{Verdict: Met, MarginS: c(600)}, false},
+		{"a hair less room", Finding{Verdict: Met, MarginK: c(0.9)}, Finding{Verdict: Met, MarginK: c(0.905)}, false},
+		{"a digit less room", Finding{Verdict: Met, MarginK: c(0.8)}, Finding{Verdict: Met, MarginK: c(0.9)}, true},
+		{"a digit less time", Finding{Verdict: Met, MarginS: c(599)}, Finding{Verdict: Met, MarginS: c(600)}, true},
 		{"alike", Finding{Verdict: Met, MarginS: c(1), MarginK: c(1)}, Finding{Verdict: Met, MarginS: c(1), MarginK: c(1)}, false},
 	} {
 		t.Run(tt.name, func(t *testing.T) {

@@ -1,6 +1,7 @@
 package rules
 
 import (
+	"math"
 	"strconv"
 	"strings"
 )
@@ -70,16 +71,20 @@ func judgeOne(l *Limit, c *courses) Finding {
 	return f
 }
 
-// lessFavourable tells whether a is worse than b: by verdict, then by margin.
+// tieS and tieK are how little two margins differ that are one, s and K: a tenth of the last digit that is printed of either. Where a
+// step ends at a temperature, its end decides in both runs, and they differ by what the arithmetic leaves.
+const tieS, tieK = 0.1, 0.01
+
+// lessFavourable tells whether a is worse than b: by verdict, then by margin, of which a tie is none.
 func lessFavourable(a, b Finding) bool {
 	if a.Verdict != b.Verdict {
 		return rank(a.Verdict) > rank(b.Verdict)
 	}
 	switch {
-	case a.MarginS != nil && b.MarginS != nil && *a.MarginS != *b.MarginS:
+	case a.MarginS != nil && b.MarginS != nil && math.Abs(*a.MarginS-*b.MarginS) > tieS:
 		return *a.MarginS < *b.MarginS
 	case a.MarginK != nil && b.MarginK != nil:
-		return *a.MarginK < *b.MarginK
+		return *a.MarginK < *b.MarginK-tieK
 	}
 	return false
 }

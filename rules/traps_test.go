@@ -373,6 +373,11 @@ func TestLowConductivity(t *testing.T) {
 	if j.Verdict != NotMet || j.Findings[0].Run != "" {
 		t.Errorf("%v, %+v", j.Verdict, j.Findings[0])
 	}
+	tied := record(t, "cook 0-60", "0:5 60:75.99999") // as where both end a step at one temperature: the usual run is named
+	j = Judge([]Limit{l}, nil, Subject{Product: "P", History: usual, Further: []Run{{LowConductivity, tied}}})
+	if j.Verdict != Met || j.Findings[0].Run != "" || *j.Findings[0].Value != 76 {
+		t.Errorf("a tie: %v, %+v", j.Verdict, j.Findings[0])
+	}
 }
 
 // TestCautions attach by trigger.

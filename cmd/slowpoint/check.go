@@ -472,7 +472,7 @@ func (r *runner) tell(w io.Writer) {
 			fmt.Fprintf(w, "%s%s\n", indent, row.Why)
 		}
 		if r.advice[i] != "" {
-			fmt.Fprintf(w, "%sadvice not met: %s\n", indent, r.advice[i])
+			fmt.Fprintf(w, "%sAdvice not met: %s\n", indent, r.advice[i])
 		}
 	}
 	if len(r.rows) > most || len(r.head.NotCalculated) > most {

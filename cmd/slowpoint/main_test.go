@@ -330,7 +330,7 @@ func TestDemo(t *testing.T) {
 	if want := []string{"advice not met: UK cook-chill 1989: chilling starts within 30 min"}; len(r.Products) != 5 || cmp.Diff(want, not) != "" {
 		t.Errorf("%d products; not met: %q, want %q", len(r.Products), not, want)
 	}
-	if !strings.Contains(out.String(), "advice not met: UK cook-chill 1989") {
+	if !strings.Contains(out.String(), "Advice not met: UK cook-chill 1989") {
 		t.Errorf("the advice is not told:\n%s", &out)
 	}
 }

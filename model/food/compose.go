@@ -179,9 +179,13 @@ func (c Composition) check() Faults {
 	if d := c.DensityKgM3; d != nil && !(*d > 0 && !math.IsInf(*d, 0)) {
 		faults = append(faults, Fault{"Density", fmt.Sprintf("%g kg/m³ is not a density", *d), "give the measured mass over the volume, or leave it blank"})
 	}
-	if f := c.FreezingC; f != nil && !(*f < 0 && *f > coldestFreezing) {
-		faults = append(faults, Fault{"Freezing point", fmt.Sprintf("%s °C is not the freezing point of a food", short(*f)),
-			fmt.Sprintf("give the temperature at which ice begins to form, below 0 and above %d °C, or leave it blank", coldestFreezing)})
+	if f := c.FreezingC; f != nil && !(*f < 0 && *f > coldestFreezing) { // which range is usual is said where it is typed
+		why := "food freezes only below 0 °C"
+		if *f < 0 {
+			why = fmt.Sprintf("what is known of ice in food ends at %d °C", coldestFreezing)
+		}
+		faults = append(faults, Fault{"Freezing point", fmt.Sprintf("%s °C is not the freezing point of a food: %s", short(*f), why),
+			"give the temperature at which ice begins to form, or leave it blank"})
 	}
 	if c.PoresJoin && c.AirByVolumePc == nil && c.DensityKgM3 == nil {
 		faults = append(faults, Fault{"Density", "the food holds much air in its pores, and how much does not follow from its composition", "give its measured mass over its volume"})

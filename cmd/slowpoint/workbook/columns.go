@@ -69,7 +69,7 @@ var (
 	usualContact, possibleContact   = &span{0, 1}, &span{0, 10}                     // m²·K/W
 	usualStart, possibleStart       = &span{-30, 110}, &span{-80, 125}              // °C
 	usualMedium, possibleMedium     = &span{-60, 280}, &span{-273.15, 600}          // °C
-	usualFreezing, possibleFreezing = &span{-6, 0}, &span{-60, 0.5}                 // °C
+	usualFreezing, possibleFreezing = &span{-6, 0}, &span{-60, 0}                   // °C
 	usualLimit                      = &span{-273.15, 125}                           // °C
 	usualFilm, possibleFilm         = &span{0, 5000}, &span{0, 1e6}                 // W/(m²·K)
 	usualSpeed, possibleSpeed       = &span{0, 15}, &span{0, 100}                   // m/s

@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"math"
+	"slices"
 	"sort"
 	"strconv"
 
@@ -31,8 +32,14 @@ func (r *reader) readLayers() {
 		}
 	}
 	if t := r.tables["Layers"]; t != nil {
+		var strays []*layer
 		for _, l := range t.lines {
-			r.hangLayer(l, r.readLayer(l))
+			if y := r.readLayer(l); !r.hangLayer(l, y) {
+				strays = append(strays, y)
+			}
+		}
+		for _, y := range strays {
+			r.missing(y)
 		}
 	}
 	for _, p := range r.products {
@@ -70,8 +77,8 @@ func (r *reader) readLayer(l *Line) *layer {
 	return y
 }
 
-// hangLayer gives a layer to its product. Where nobody knows whose it is, every layered slab that may lack it is refused.
-func (r *reader) hangLayer(l *Line, y *layer) {
+// hangLayer gives a layer to its product; false: nobody knows whose it is.
+func (r *reader) hangLayer(l *Line, y *layer) bool {
 	name := l.Words("Product")
 	p := r.byName[Key(name)]
 	switch {
@@ -79,13 +86,7 @@ func (r *reader) hangLayer(l *Line, y *layer) {
 		if name != "" && !r.blind() {
 			l.Fault("Product", name, productUnknown, r.offer(name, r.productNames))
 		}
-		near := r.near(name, r.productNames)
-		for _, q := range r.products {
-			if q.Shape == model.LayeredSlab && (near == "" || Key(q.Name) == Key(near)) {
-				q.suffer(l.because)
-			}
-		}
-		return
+		return false
 	case p.Shape != nil && p.Shape != model.LayeredSlab:
 		l.Fault("Product", name, layersOfOther, p.Shape.Name)
 	}
@@ -96,6 +97,27 @@ func (r *reader) hangLayer(l *Line, y *layer) {
 	}
 	p.layers = append(p.layers, y)
 	p.suffer(l.because)
+	return true
+}
+
+// missing refuses the layered slabs that may lack a layer whose product nobody knows: a slab that looks whole may lack its lowest one.
+// Not those that have a layer of its number, and of the others only the one with nearly its name, if there is one.
+func (r *reader) missing(y *layer) {
+	lacks := func(p *product) bool {
+		return p.Shape == model.LayeredSlab && (y.n == 0 || !slices.ContainsFunc(p.layers, func(o *layer) bool { return o.n == y.n }))
+	}
+	near := r.byName[Key(r.near(y.line.Words("Product"), r.productNames))]
+	if near != nil && (near.Shape != model.LayeredSlab || lacks(near)) {
+		if lacks(near) {
+			near.suffer(y.line.because)
+		}
+		return
+	}
+	for _, p := range r.products {
+		if lacks(p) {
+			p.suffer(y.line.because)
+		}
+	}
 }
 
 // stack puts the layers of a product together from the top.

@@ -1,6 +1,7 @@
 package workbook
 
 import (
+	"slices"
 	"strconv"
 	"strings"
 
@@ -25,19 +26,6 @@ func (p *product) suffer(es cell.Errors) { reasons(&p.because, es) }
 
 func (r *reader) productNames() []string {
 	return names(r.products, func(p *product) string { return p.Name })
-}
-
-// sizes are the size columns with the field that each fills.
-var sizes = []struct {
-	heading string
-	field   func(*model.Size) *float64
-}{
-	{"Thickness", func(s *model.Size) *float64 { return &s.ThicknessM }},
-	{"Width", func(s *model.Size) *float64 { return &s.WidthM }},
-	{"Length", func(s *model.Size) *float64 { return &s.LengthM }},
-	{"Diameter", func(s *model.Size) *float64 { return &s.DiameterM }},
-	{"Volume", func(s *model.Size) *float64 { return &s.VolumeM3 }},
-	{"Surface area", func(s *model.Size) *float64 { return &s.AreaM2 }},
 }
 
 // readProducts reads the sheet Products, row by row.
@@ -81,25 +69,20 @@ func (p *product) size(l *Line) {
 			}
 		}
 	}
-	for _, z := range sizes {
-		used := p.Shape == nil
-		if p.Shape != nil {
-			for _, n := range p.Shape.Needs {
-				used = used || n == z.heading
-			}
-		}
+	for _, column := range model.SizeColumns {
+		used := p.Shape == nil || slices.Contains(p.Shape.Needs, column)
 		switch {
-		case !used && l.Filled(z.heading):
+		case !used && l.Filled(column):
 			needs := and(p.Shape.Needs)
 			if needs == "" {
 				needs = "no size of its own"
 			}
-			l.Fault(z.heading, l.Entry(z.heading).Text, sizeUnused, strings.ToLower(z.heading), p.Shape.Name, needs)
-		case used && p.Shape != nil && !l.Filled(z.heading):
-			l.Fault(z.heading, "", sizeMissing, z.heading, p.Shape.Name, and(p.Shape.Needs))
+			l.Fault(column, l.Entry(column).Text, sizeUnused, strings.ToLower(column), p.Shape.Name, needs)
+		case used && p.Shape != nil && !l.Filled(column):
+			l.Fault(column, "", sizeMissing, column, p.Shape.Name, and(p.Shape.Needs))
 		case used:
-			if v := l.Value(z.heading); v != nil {
-				*z.field(&p.Size) = v.Computed
+			if v := l.Value(column); v != nil {
+				*p.Size.Of(column) = v.Computed
 				p.Inches = p.Inches || inches(v.Typed)
 			}
 		}
