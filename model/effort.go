@@ -27,7 +27,7 @@ const (
 	volumesWorse     = 3
 	spaceWorse       = 1
 	stagesWorse      = 2   // polynomials with times of second order
-	roundWorse       = 1.5 // of cylinders and spheres: their centre has no node, and is where the error is largest
+	roundWorse       = 1.5 // of cylinders and spheres, whose centre has no node, and is where the error is largest, and of wet faces that differ
 	polynomialsWorse = 3
 )
 
@@ -38,11 +38,10 @@ func (s *solver) polynomial() bool { return s.used > 0 && !s.front && s.product.
 const marchGoalK = 0.019
 
 // mostTries is how often a march may be made again with more effort. A front of ice makes every place turn in its own instant, which more
-// nodes and shorter steps move a little, and so does a surface that comes to boil; in two and three directions they cost more than they
-// are worth. What is left is stated.
+// nodes and shorter steps move a little; in two and three directions they cost more than they are worth. What is left is stated.
 func (s *solver) mostTries() int {
 	switch {
-	case s.used > 1 && (s.front || s.wets()):
+	case s.used > 1 && s.front:
 		return 0
 	case s.front:
 		return 1
@@ -63,9 +62,12 @@ func (s *solver) firstEffort() (e effort, worse float64) {
 	case s.product.Shape == Spheroid:
 		e.more, e.tolK = 1.3, 4e-3
 		return e, stagesWorse
-	case s.used > 1 && s.wets():
-		e.more, e.tolK = 1.1, 1e-2
-		return e, stagesWorse
+	case s.wetFaces():
+		e.tolK = 4e-3
+		if s.kinds[0] == planeFull || s.kinds[1] == radial {
+			return e, roundWorse
+		}
+		return e, polynomialsWorse
 	}
 	e.tolK = 8e-3
 	if s.used == 3 {
