@@ -38,12 +38,13 @@ func (s *solver) polynomial() bool { return s.used > 0 && !s.front && s.product.
 const marchGoalK = 0.019
 
 // mostTries is how often a march may be made again with more effort. A front of ice makes every place turn in its own instant, which more
-// nodes and shorter steps move a little; in two and three directions they cost more than they are worth. What is left is stated.
+// nodes and shorter steps move a little; in two and three directions they cost more than they are worth, and so does a third march of a
+// spheroid far from a sphere, whose time grows with the fifth power of the polynomials. What is left is stated.
 func (s *solver) mostTries() int {
 	switch {
 	case s.used > 1 && s.front:
 		return 0
-	case s.front:
+	case s.front, s.ball != nil && max(s.radii[0], s.radii[1]) > 5*min(s.radii[0], s.radii[1]):
 		return 1
 	}
 	return 2
