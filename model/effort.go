@@ -39,12 +39,12 @@ const marchGoalK = 0.019
 
 // mostTries is how often a march may be made again with more effort. A front of ice makes every place turn in its own instant, which more
 // nodes and shorter steps move a little; in two and three directions they cost more than they are worth, and so does a third march of a
-// spheroid far from a sphere, whose time grows with the fifth power of the polynomials. What is left is stated.
+// wet brick or of a spheroid far from a sphere, whose time grows with the fifth power of the polynomials. What is left is stated.
 func (s *solver) mostTries() int {
 	switch {
 	case s.used > 1 && s.front:
 		return 0
-	case s.front, s.ball != nil && max(s.radii[0], s.radii[1]) > 5*min(s.radii[0], s.radii[1]):
+	case s.front, s.used == 3 && s.wetFaces(), s.ball != nil && max(s.radii[0], s.radii[1]) > 5*min(s.radii[0], s.radii[1]):
 		return 1
 	}
 	return 2
