@@ -111,8 +111,25 @@ func (s *solver) wetFaces() bool {
 // stretchOf is the stretch of an axis.
 func (s *solver) stretchOf(a int) stretch { return stretchFor(s.crowded(a)) }
 
-// smoothNodes is how many polynomials an axis gets: a stretched one as many as one of its crowded radius, and some for the stretch.
+// mostNodes is how many nodes a brick may have: more take tens of seconds, and a track that is too long to keep. It binds bricks of a metre
+// with steps of seconds, whose first layers are then left coarse: the stated error tells.
+const mostNodes = 16000
+
+// smoothNodes is how many polynomials an axis gets.
 func (s *solver) smoothNodes(a int, e effort) int {
+	n := s.freeNodes(a, e)
+	if s.used == 3 {
+		all := float64(s.freeNodes(0, e) * s.freeNodes(1, e) * s.freeNodes(2, e))
+		n = int(float64(n) * min(1, math.Cbrt(mostNodes/all)))
+	}
+	if e.rough {
+		n += s.fewer(a, 0) - s.degrees(a, 0)
+	}
+	return n
+}
+
+// freeNodes is how many an axis needs by itself: a stretched one as many as one of its crowded radius, and some for the stretch.
+func (s *solver) freeNodes(a int, e effort) int {
 	by := s.crowded(a)
 	fo := s.foMin[a]
 	s.foMin[a] /= by * by
@@ -122,9 +139,6 @@ func (s *solver) smoothNodes(a int, e effort) int {
 	}
 	n := int(math.Round((float64(s.degrees(a, 0)) + more) * e.more))
 	s.foMin[a] = fo
-	if e.rough {
-		n += s.fewer(a, 0) - s.degrees(a, 0)
-	}
 	return min(n, maxDegrees)
 }
 
