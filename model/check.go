@@ -88,10 +88,32 @@ func (c *checker) shape() {
 		c.add(p.At, "Shape", p.Shape.Name, p.Shape.Refused,
 			"use the nearest shape on the slow side: the thickest part as a slab or cylinder, with the fewest cooled faces")
 	}
+	whole := true
 	for _, need := range p.Shape.Needs {
 		if v := *p.Size.Of(need); !(v > 0) || math.IsInf(v, 0) {
 			c.add(p.At, need, "", fmt.Sprintf("a %s needs %s, a number above 0", p.Shape.Name, need), "")
+			whole = false
 		}
+	}
+	if whole && p.Shape == Spheroid {
+		c.spheroid()
+	}
+}
+
+// mostSpheroid is how many times as long as wide, or as wide as thick, a spheroid may be: beyond that marches of it take minutes, and
+// polynomials on its map are tenths of a degree off.
+const mostSpheroid = 10
+
+// spheroid refuses one that is nearly a cylinder or a slab. Both contain it, so that they are behind it.
+func (c *checker) spheroid() {
+	p := c.product
+	along, across := p.Size.ThicknessM, p.Size.DiameterM
+	const msg = "the spheroid is %.3g times as %s, and one of more than %d times cannot be calculated"
+	switch {
+	case along > mostSpheroid*across:
+		c.add(p.At, "Thickness", fmt.Sprintf("%.5g mm", 1000*along), fmt.Sprintf(msg, along/across, "long as its diameter", mostSpheroid), "take a cylinder of its diameter, which is slower")
+	case across > mostSpheroid*along:
+		c.add(p.At, "Diameter", fmt.Sprintf("%.5g mm", 1000*across), fmt.Sprintf(msg, across/along, "wide as it is thick", mostSpheroid), "take a slab of its thickness, which is slower")
 	}
 }
 

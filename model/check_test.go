@@ -91,6 +91,12 @@ func TestCheckRefuses(t *testing.T) {
 			p.Shape, p.Size.ThicknessM, p.Size.DiameterM = Spheroid, 0.06, 0.04
 			p.Points = []Point{{At: cell.Ref{Sheet: "Points", Row: 4}, Name: "probe", Place: Place{UpM: 0.024, AcrossM: 0.013}}}
 		}, "Points row 4", "Across", "24 mm up, the spheroid reaches 12.0 mm across"},
+		{"spheroid as long as a rope", func(p *Product, _ []Step) {
+			p.Shape, p.Size.ThicknessM, p.Size.DiameterM = Spheroid, 0.61, 0.06
+		}, "Products row 2", "Thickness", "10.2 times as long as its diameter"},
+		{"spheroid as flat as a cake", func(p *Product, _ []Step) {
+			p.Shape, p.Size.ThicknessM, p.Size.DiameterM = Spheroid, 0.02, 0.23
+		}, "Products row 2", "Diameter", "11.5 times as wide as it is thick"},
 		{"a layer in contact below nothing", func(p *Product, _ []Step) {
 			layered(p)
 			p.Layers[1].BelowM2KW = 0.01

@@ -32,7 +32,7 @@ const (
 	roundFrontWorse  = 2 // the last ice of cylinders and spheres goes fastest, and the error of the rougher march is less than four times as large
 	spaceWorse       = 1
 	stagesWorse      = 2   // polynomials with times of second order
-	roundWorse       = 1.5 // of cylinders and spheres: their centre has no node, and is where the error is largest
+	roundWorse       = 1.5 // of cylinders and spheres, whose centre has no node, and is where the error is largest, and of wet faces that differ
 	polynomialsWorse = 3
 )
 
@@ -42,13 +42,14 @@ func (s *solver) polynomial() bool { return s.used > 0 && !s.front && s.product.
 // marchGoalK is the error that a march is to keep, K.
 const marchGoalK = 0.019
 
-// mostTries is how often a march may be made again with more effort. Where a front of ice or a surface that comes to boil moves in two and three
-// directions, more nodes and shorter steps cost more than they are worth. What is left is stated.
+// mostTries is how often a march may be made again with more effort. A front of ice in two and three directions costs more than more nodes and
+// shorter steps are worth, and so does a third march of a wet brick or of a spheroid far from a sphere, whose time grows with the fifth power
+// of the polynomials. What is left is stated.
 func (s *solver) mostTries() int {
 	switch {
-	case s.used > 1 && (s.front || s.wets()):
+	case s.used > 1 && s.front:
 		return 0
-	case s.front:
+	case s.front, s.used == 3 && s.wetFaces(), s.ball != nil && max(s.radii[0], s.radii[1]) > 5*min(s.radii[0], s.radii[1]):
 		return 1
 	}
 	return 2
@@ -73,9 +74,12 @@ func (s *solver) firstEffort() (e effort, worse float64) {
 	case s.product.Shape == Spheroid:
 		e.more, e.tolK = 1.3, 4e-3
 		return e, stagesWorse
-	case s.used > 1 && s.wets():
-		e.more, e.tolK = 1.1, 1e-2
-		return e, stagesWorse
+	case s.wetFaces():
+		e.tolK = 4e-3
+		if s.kinds[0] == planeFull || s.kinds[1] == radial {
+			return e, roundWorse
+		}
+		return e, polynomialsWorse
 	}
 	e.tolK = 8e-3
 	if s.used == 3 {

@@ -75,7 +75,7 @@ func (s *solver) march() (*History, error) {
 		}
 		s.chain, s.main = chain, fine
 		h.ErrorK = max(1e-5, fine.differs(h, rough)/worse)
-		if h.ErrorK <= marchGoalK || tries == s.mostTries() {
+		if h.ErrorK <= marchGoalK || tries == s.mostTries() || len(fine.track.data) > againKept || s.wetFaces() && len(fine.track.times) > againSteps {
 			s.warn(h)
 			return h, nil
 		}
@@ -172,8 +172,10 @@ func (s *solver) outside(low, high float64) {
 	}
 }
 
-// mostKept is how many numbers a track may keep: 300 MB.
-const mostKept = 4e7
+// mostKept is how many numbers a track may keep: 300 MB. A march that kept more than againKept is not made again: with more nodes and shorter
+// steps it could be refused for what it keeps, and would take many seconds; nor is one with wet faces that took more than againSteps, through a course of hundreds of corners. What is left is
+// stated.
+const mostKept, againKept, againSteps = 4e7, 1e7, 4000
 
 // leastStepS is the shortest step of a march, s: one that cannot be solved is not made shorter than this.
 const leastStepS = 1e-7

@@ -83,7 +83,7 @@ func (s *solver) laySpace(f *marched, l *law, e effort) {
 	}
 	march := newSpaceMarch(axes, l, s.product.StartC)
 	f.state, f.mesh = march, newSpaceMesh(axes)
-	if !front && (s.used == 1 || !s.wets()) {
+	if !front {
 		f.state = newModesMarch(march, e.tolK/4)
 	}
 	f.body = newBody(body{kinds: s.kinds, radii: s.radii, by: by}, nd)
@@ -98,16 +98,24 @@ const crowding = 1.5
 
 // crowded is the factor by which an axis is crowded at its faces.
 func (s *solver) crowded(a int) float64 {
-	thin := s.radii[a]
-	for i := 0; i < s.used; i++ {
-		thin = min(thin, s.radii[i])
-	}
-	return max(0.1, min(1, crowding*thin/s.radii[a]))
+	return max(0.1, min(1, crowding*s.thinnest()/s.radii[a]))
 }
 
-// wets tells whether moisture counts on any surface: near boiling its flow is so steep, and so much steeper at an edge than beside it, that no
-// linear problem is close to it all over a face.
-func (s *solver) wets() bool {
+// thinnest is the shortest half axis, m.
+func (s *solver) thinnest() float64 {
+	thin := s.radii[0]
+	for _, r := range s.radii[1:s.used] {
+		thin = min(thin, r)
+	}
+	return thin
+}
+
+// wetFaces tells whether moisture counts on faces of more directions than one: near boiling its flow is steep, and so much steeper at an edge
+// than beside it that the food there needs more polynomials than dry.
+func (s *solver) wetFaces() bool {
+	if s.used == 1 || s.ball != nil {
+		return false
+	}
 	for i := range s.steps {
 		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
 			if e.wet() || e.steamWithAir() {
@@ -121,17 +129,51 @@ func (s *solver) wets() bool {
 // stretchOf is the stretch of an axis.
 func (s *solver) stretchOf(a int) stretch { return stretchFor(s.crowded(a)) }
 
-// smoothNodes is how many polynomials an axis gets: a stretched one as many as one of its crowded radius, and some for the stretch.
+// mostNodes is how many nodes a brick may have: more take tens of seconds, and a track that is too long to keep. It binds bricks of a metre
+// with steps of seconds, whose first layers are then left coarse: the stated error tells.
+const mostNodes = 16000
+
+// smoothNodes is how many polynomials an axis gets.
 func (s *solver) smoothNodes(a int, e effort) int {
-	by := s.crowded(a)
-	fo := s.foMin[a]
-	s.foMin[a] /= by * by
-	n := int(math.Round((float64(s.degrees(a, 0)) + 2*(1-by)) * e.more))
-	s.foMin[a] = fo
+	n := s.freeNodes(a, e)
+	if s.used == 3 {
+		all := float64(s.freeNodes(0, e) * s.freeNodes(1, e) * s.freeNodes(2, e))
+		n = int(float64(n) * min(1, math.Cbrt(mostNodes/all)))
+	}
 	if e.rough {
 		n += s.fewer(a, 0) - s.degrees(a, 0)
 	}
+	return n
+}
+
+// freeNodes is how many an axis needs by itself: a stretched one as many as one of its crowded radius, and some for the stretch.
+func (s *solver) freeNodes(a int, e effort) int {
+	by := s.crowded(a)
+	fo := s.foMin[a]
+	s.foMin[a] /= by * by
+	more := 2 * (1 - by)
+	if s.wetFaces() {
+		more = s.wetNodes(a)
+	}
+	n := int(math.Round((float64(s.degrees(a, 0)) + more) * e.more))
+	s.foMin[a] = fo
 	return min(n, maxDegrees)
+}
+
+// wetNodes is how many polynomials more an axis gets where moisture counts on faces of more than one direction: those that are longer than
+// the thinnest have layers as thin as its own, and no place takes as long to come to rest as the middle of a disc.
+func (s *solver) wetNodes(a int) float64 {
+	more := 5 * (1 - s.thinnest()/s.radii[a])
+	if s.kinds[a] == radial {
+		more *= 2
+	}
+	if !s.sharp[a] { // those of a sharp film are many already
+		more += 1.5
+	}
+	if s.kinds[a] == planeFull {
+		more *= 1.85
+	}
+	return more
 }
 
 // volumes is how many control volumes an axis gets of n.

@@ -120,7 +120,11 @@ func (a *spaceAxis) modes(mem *slab, alpha float64, films [2]float64) (decay, to
 	return decay, to, from
 }
 
-// steepness is the largest slope of the flux on a face now, W/(m²·K).
+// leastSteep is how steep a film must be by the steepest place of its face: what is left over there would run away from half on.
+const leastSteep = 0.55
+
+// steepness is how steep the film of a face is to be now, W/(m²·K): in the middle of the slopes of the flux on it, so that as little as
+// possible is left over where it is steepest, mostly at an edge, and where it is flattest.
 func (m *modesMarch) steepness(a, side int, tau float64) float64 {
 	s := m.skins[a][side]
 	switch {
@@ -129,12 +133,12 @@ func (m *modesMarch) steepness(a, side int, tau float64) float64 {
 	case s.linear:
 		return s.totalW
 	}
-	most := 0.0
+	least, most := math.Inf(1), 0.0
 	for _, i := range m.spots[a][side] {
 		_, d := s.flux(m.law.temperature(m.h[i]), tau)
-		most = max(most, -d)
+		least, most = min(least, -d), max(most, -d)
 	}
-	return most
+	return max((least+most)/2, leastSteep*most)
 }
 
 // A linear problem is left for a new one when a surface is steeper or flatter than its film by these factors: what is left over would grow
@@ -271,8 +275,10 @@ func (m *modesMarch) try(tau, d float64) float64 {
 		m.next[i] = a + m.p2[i]*(m.na[i]-m.n0[i])
 	}
 	m.left(m.next, m.n1, tau+d)
+	if m.lastS == 0 {
+		m.halfway(tau, d)
+	}
 	for i, n := range m.n1 {
-		m.bend[i] = 0
 		if m.lastS > 0 {
 			m.bend[i] = ((n-m.n0[i])/d - (m.n0[i]-m.before[i])/m.lastS) / (d + m.lastS)
 		}
@@ -289,6 +295,19 @@ func (m *modesMarch) try(tau, d float64) float64 {
 		return math.Inf(1)
 	}
 	return worst
+}
+
+// halfway takes the bend of a step that has none before it from what is left over in its middle.
+func (m *modesMarch) halfway(tau, d float64) {
+	m.phis(d / 2)
+	for i, c := range m.c {
+		m.a[i] = m.e[i]*c + m.p1[i]*m.n0[i] + m.p2[i]*(m.n1[i]-m.n0[i])/2
+	}
+	m.left(m.a, m.bend, tau+d/2)
+	for i, n := range m.bend {
+		m.bend[i] = 2 * (m.n0[i] + m.n1[i] - 2*n) / (d * d)
+	}
+	m.phis(d)
 }
 
 // at gives the temperatures of the nodes and their slopes in time, x s after the start of the last try.
