@@ -14,6 +14,8 @@ type law struct {
 	zeroC      float64 // temperature at which h and u are 0, °C
 	warm, cold piece   // h ≥ 0 and h < 0
 	lowC       float64 // coldest temperature that the tables know, °C
+
+	thawed, frozen *sweep // the same by u ≥ 0 and u < 0, where a front of ice is marched; see sweeps
 }
 
 // piece is a table over evenly spaced heat contents from 0 on, downwards for the cold one; each row is a cubic through its two ends with
@@ -220,4 +222,97 @@ func (l *law) thin(h float64) float64 {
 	x = min(x, 1)
 	a := &r.t
 	return (a[1] + x*(2*a[2]+x*3*a[3])) * per
+}
+
+// sweep is a table over evenly spaced Kirchhoff integrals from 0 on, downwards for a frozen food. Beyond the last row everything goes on as
+// it ends there.
+type sweep struct {
+	per  float64 // rows per W/m; negative for the frozen one
+	rows []sweepRow
+}
+
+// sweepRow holds the cubics of temperature and heat content over a row, in its own coordinate 0…1, and the integral of the heat content over
+// the Kirchhoff integral at its beginning, J·W/m⁴.
+type sweepRow struct {
+	t, h [4]float64
+	sum  float64
+}
+
+// sweeps makes the tables by the Kirchhoff integral.
+func (l *law) sweeps() {
+	if l.thawed == nil {
+		l.thawed, l.frozen = l.sweep(&l.warm, 512), l.sweep(&l.cold, 4096)
+	}
+}
+
+// sweep makes the table of a piece.
+func (l *law) sweep(p *piece, rows int) *sweep {
+	last := &p.rows[len(p.rows)-1].u
+	end := last[0] + last[1] + last[2] + last[3]
+	w := &sweep{per: float64(rows) / end, rows: make([]sweepRow, rows)}
+	type point struct{ t, h, dt, dh float64 }
+	points := make([]point, rows+1)
+	i := 0
+	for r := range points {
+		want := end * float64(r) / float64(rows)
+		for i < len(p.rows)-1 && math.Abs(p.rows[i+1].u[0]) < math.Abs(want) {
+			i++
+		}
+		q := &p.rows[i]
+		x := 0.5
+		for range 30 { // Newton's method: the row is all but straight
+			b := &q.u
+			off := (want - b[0] - x*(b[1]+x*(b[2]+x*b[3]))) / (b[1] + x*(2*b[2]+x*3*b[3]))
+			if x += off; math.Abs(off) < 1e-13 {
+				break
+			}
+		}
+		a, b := &q.t, &q.u
+		du := (b[1] + x*(2*b[2]+x*3*b[3]))
+		points[r] = point{a[0] + x*(a[1]+x*(a[2]+x*a[3])), (float64(i) + x) / p.per, (a[1] + x*(2*a[2]+x*3*a[3])) / du, 1 / (p.per * du)}
+	}
+	d, sum := 1/w.per, 0.0
+	for r := range w.rows {
+		a, b := points[r], points[r+1]
+		w.rows[r] = sweepRow{cubic(a.t, b.t, a.dt*d, b.dt*d), cubic(a.h, b.h, a.dh*d, b.dh*d), sum}
+		h := &w.rows[r].h
+		sum += d * (h[0] + h[1]/2 + h[2]/3 + h[3]/4)
+	}
+	return w
+}
+
+// swept gives the row of a Kirchhoff integral and the place in it; beyond the last row the place is above 1.
+func (l *law) swept(u float64) (*sweepRow, float64, float64) {
+	w := l.thawed
+	if u < 0 {
+		w = l.frozen
+	}
+	x, i := u*w.per, len(w.rows)-1
+	if x < float64(i) {
+		i = int(x)
+	}
+	return &w.rows[i], x - float64(i), w.per
+}
+
+// temperatureAt gives the temperature of a Kirchhoff integral, °C, and its slope by it, m·K/W.
+func (l *law) temperatureAt(u float64) (t, slope float64) {
+	r, x, per := l.swept(u)
+	a := &r.t
+	if x > 1 {
+		d := a[1] + 2*a[2] + 3*a[3]
+		return a[0] + a[1] + a[2] + a[3] + d*(x-1), d * per
+	}
+	return a[0] + x*(a[1]+x*(a[2]+x*a[3])), (a[1] + x*(2*a[2]+x*3*a[3])) * per
+}
+
+// heatAt gives the heat content of a Kirchhoff integral, J/m³, and its integral over the Kirchhoff integral from 0 on, J·W/m⁴.
+func (l *law) heatAt(u float64) (h, sum float64) {
+	r, x, per := l.swept(u)
+	b := &r.h
+	if x > 1 {
+		end, d := b[0]+b[1]+b[2]+b[3], b[1]+2*b[2]+3*b[3]
+		y := x - 1
+		return end + y*d, r.sum + (b[0]+b[1]/2+b[2]/3+b[3]/4+y*(end+y*d/2))/per
+	}
+	return b[0] + x*(b[1]+x*(b[2]+x*b[3])), r.sum + x*(b[0]+x*(b[1]/2+x*(b[2]/3+x*b[3]/4)))/per
 }
