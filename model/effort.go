@@ -15,17 +15,17 @@ type effort struct {
 // axis make six to twenty times that of the space (as in fewerWorse).
 func (s *solver) rougher(e effort, ran []Span) effort {
 	if s.front && s.used > 1 {
-		return effort{more: e.more, tolK: e.tolK * 3, rough: true, fewer: 0.7, ends: ran}
+		return effort{more: e.more, tolK: e.tolK * 2, rough: true, fewer: 0.7, ends: ran}
 	}
 	return effort{more: e.more, tolK: e.tolK * 6, rough: true, fewer: 0.5, ends: ran}
 }
 
 // How the difference of the two marches goes over into an error: that of a march with four or six times the error lies three or five
-// errors off, less some for doubt; where a front moves in more directions than one the rougher march has seven tenths of the volumes, and
-// twice the error.
+// errors off, less some for doubt; where a front moves in more directions than one the rougher march has seven tenths of the volumes, which makes
+// twice the error there, and at edges and corners, where the two differ most, more: the first march is off by half of the difference.
 const (
 	volumesWorse     = 3
-	spaceWorse       = 1
+	spaceWorse       = 1.5
 	stagesWorse      = 2   // polynomials with times of second order
 	roundWorse       = 1.5 // of cylinders and spheres: their centre has no node, and is where the error is largest
 	polynomialsWorse = 3
@@ -56,8 +56,11 @@ func (s *solver) firstEffort() (e effort, worse float64) {
 	switch {
 	case !s.polynomial():
 		if s.used > 1 {
-			e.tolK = 1.5e-2
-			return e, spaceWorse
+			e.tolK = [4]float64{2: 2e-2, 3: 1.2e-1}[s.used]
+			if s.used == 3 {
+				return e, spaceWorse
+			}
+			return e, 1
 		}
 		return e, volumesWorse
 	case s.product.Shape == Spheroid:
