@@ -15,22 +15,22 @@ type effort struct {
 // axis make six to twenty times that of the space (as in fewerWorse). Where ice moves three times the tolerance shows as much.
 func (s *solver) rougher(e effort, ran []Span) effort {
 	r := effort{more: e.more, tolK: e.tolK * 6, rough: true, fewer: 0.5, ends: ran}
-	if s.front {
+	switch {
+	case s.front && s.used > 1:
+		r.tolK, r.fewer = e.tolK*2, 0.7
+	case s.front:
 		r.tolK = e.tolK * 3
-		if s.used > 1 {
-			r.fewer = 0.7
-		}
 	}
 	return r
 }
 
 // How the difference of the two marches goes over into an error: that of a march with four or six times the error lies three or five
-// errors off, less some for doubt; where a front moves in more directions than one the rougher march has seven tenths of the volumes, and
-// twice the error.
+// errors off, less some for doubt; where a front moves in more directions than one the rougher march has seven tenths of the volumes, which makes
+// twice the error there, and at edges and corners, where the two differ most, more: the first march is off by half of the difference.
 const (
 	volumesWorse     = 3
 	roundFrontWorse  = 2 // the last ice of cylinders and spheres goes fastest, and the error of the rougher march is less than four times as large
-	spaceWorse       = 1
+	spaceWorse       = 1.5
 	stagesWorse      = 2   // polynomials with times of second order
 	roundWorse       = 1.5 // of cylinders and spheres, whose centre has no node, and is where the error is largest, and of wet faces that differ
 	polynomialsWorse = 3
@@ -61,8 +61,11 @@ func (s *solver) firstEffort() (e effort, worse float64) {
 	switch {
 	case !s.polynomial():
 		if s.used > 1 {
-			e.tolK = 1.5e-2
-			return e, spaceWorse
+			e.tolK = [4]float64{2: 2e-2, 3: 1.2e-1}[s.used]
+			if s.used == 3 {
+				return e, spaceWorse
+			}
+			return e, 1
 		}
 		if s.front {
 			e.tolK = 1e-2

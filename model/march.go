@@ -94,7 +94,7 @@ const roughK = 0.05
 
 // marchRough is a first look.
 func (s *solver) marchRough(e effort) (*History, error) {
-	e.tolK *= 4
+	e.tolK = min(4*e.tolK, 0.12)
 	e.more *= [4]float64{0.85, 0.85, 0.8, 0.65}[s.used]
 	h, fine := s.marchOnce(e)
 	if len(s.refused) > 0 {

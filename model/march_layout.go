@@ -16,8 +16,8 @@ func (s *solver) newMarched(e effort) *marched {
 	}
 	f.track.n = len(f.mesh.weights())
 	f.track.laws = f.state.keepsHeat()
-	if s.front && f.laws == nil {
-		f.laws = f.track.laws
+	if m, ok := f.state.(*spaceMarch); ok && m.ice != nil {
+		f.track.ice = laws[0]
 	}
 	f.now = make([]float64, f.track.n)
 	f.shot = f.mesh.shot(f, f.now)
@@ -73,7 +73,8 @@ func (s *solver) laySpace(f *marched, l *law, e effort) {
 			axes[a] = &spaceAxis{kind: lumped, n: 1, x: []float64{0}, w: []float64{1}, k: []float64{0}}
 			continue
 		case front:
-			axes[a] = cutAxis(s.kinds[a], s.radii[a], e.volumes(cutNodes[s.used]), s.faces[a])
+			n, crowd := s.cutNodes(a)
+			axes[a] = cutAxis(s.kinds[a], s.radii[a], e.volumes(n), crowd, s.faces[a])
 			nd.x[a] = axes[a].x
 			continue
 		}
@@ -242,4 +243,22 @@ const lineNodes = 42
 // sharpNodes is how many a half axis gets whose ice forms all but at one temperature, so that a volume turns at once.
 const sharpNodes = 84
 
-var cutNodes = [4]int{2: 22, 3: 14}
+// cutNodes is how many a half axis gets where a front moves through more than one, and how they crowd: in three directions fewer where the two
+// faces of one axis are not alike, which makes twice the volumes. Thin axes get fewer than wide ones, since the closest nodes set the number of
+// stages; wide ones are crowded more, so that a front begins at all faces alike.
+func (s *solver) cutNodes(a int) (n int, crowd float64) {
+	most := 18.0
+	switch {
+	case s.used == 2:
+		most = 30
+	case s.kinds[0] == planeFull:
+		most = 14
+	}
+	mean, thin := 1.0, s.radii[a]
+	for i := range s.used {
+		mean *= s.radii[i]
+		thin = min(thin, s.radii[i])
+	}
+	mean = math.Pow(mean, 1/float64(s.used))
+	return int(math.Round(most * max(0.75, min(1.25, math.Sqrt(s.radii[a]/mean))))), cutCrowd + 0.7*math.Log(s.radii[a]/thin)
+}

@@ -26,7 +26,7 @@ const perfectM2KW = 1e-7
 
 // Nodes stand closer at a face than at the centre, by e to this power: of one axis; of cylinders and spheres, where the last ice goes fastest in
 // the middle; and of more axes, which are stepped explicitly and pay for the closest.
-const lineCrowd, roundCrowd, cutCrowd = 2.4, 1, 1
+const lineCrowd, roundCrowd, cutCrowd = 2.4, 1, 1.1
 
 // depths gives the depths below a face of n+1 nodes, m, from 0 to r.
 func depths(r float64, n int, crowd float64) []float64 {

@@ -213,6 +213,9 @@ func TestFreezingAndThawingReturnTheHeat(t *testing.T) {
 		q := heat / durationS / faceByVolume(&d.Product)
 		steps := []Step{{Name: "there", Stage: Cool, DurationS: durationS, Exposure: flowing(q)}, {Name: "back", Stage: Cool, DurationS: durationS, Exposure: flowing(-q)}}
 		e := effort{more: 1, tolK: 2e-2}
+		if d.Shape == Brick && d.freezes {
+			e.more = 0.6 // for its time
+		}
 		s, f := readyMarch(t, &d.Product, steps, e)
 		s.main = f
 		before := heatContent(f)
@@ -241,6 +244,9 @@ func TestMarchedNodesStayBetweenStartAndMedia(t *testing.T) {
 	}
 	eachDrawn(t, 1, marchedShapes, func(t *testing.T, d *drawn) {
 		e := effort{more: 1, tolK: 2e-3}
+		if d.Shape == Brick && d.freezes {
+			e.more = 0.6 // for its time
+		}
 		s, _ := readyMarch(t, &d.Product, d.steps, e)
 		h, f := s.marchOnce(e)
 		low, high := d.StartC, d.StartC
@@ -259,11 +265,11 @@ func TestMarchedNodesStayBetweenStartAndMedia(t *testing.T) {
 // step on.
 func apartK(a, b *History) float64 {
 	worst := 0.0
-	var times []float64
+	var times, before []float64
 	for _, sp := range a.Spans {
 		for tau := a.settle; ; tau *= 1.5 {
 			at := min(sp.StartS+tau, sp.EndS)
-			times = append(times, at)
+			times, before = append(times, at), append(before, at-lately*(at-sp.StartS))
 			if at == sp.EndS {
 				break
 			}
@@ -274,7 +280,8 @@ func apartK(a, b *History) float64 {
 		a.Course(spot.Place, times, x)
 		b.Course(spot.Place, times, y)
 		for i := range x {
-			if off := math.Abs(x[i] - y[i]); off > worst && !atIce(a, spot.Place, times[i]) && !atIce(b, spot.Place, times[i]) {
+			if off := math.Abs(x[i] - y[i]); off > worst && !atIce(a, spot.Place, times[i]) && !atIce(b, spot.Place, times[i]) &&
+				!(severalWays(a.Product) && atIce(b, spot.Place, before[i])) {
 				worst = off
 			}
 		}
@@ -282,8 +289,13 @@ func apartK(a, b *History) float64 {
 	return worst
 }
 
-// atIce tells whether a front of ice stands within a control volume and a half of a place, where the stated error does not hold: both frozen
-// and unfrozen food lie around it.
+// severalWays tells whether heat goes through a product in two or three directions.
+func severalWays(p *Product) bool {
+	return p.Shape == ShortCylinder || p.Shape == Bar || p.Shape == Brick
+}
+
+// atIce tells whether a front of ice stands within a control volume and a half of a place, in several directions within two of the rougher
+// march, where the stated error does not hold: both frozen and unfrozen food lie around it.
 func atIce(h *History, p Place, at float64) bool {
 	var zeros []float64
 	for _, f := range h.Product.Foods() {
@@ -294,7 +306,10 @@ func atIce(h *History, p Place, at float64) bool {
 	half := reach(h.Product)
 	share := 0.07 // of a half axis of 48 volumes
 	if half[1] < 1 {
-		share = 0.2 // of one of 14
+		share = 0.2 // of one of 18
+	}
+	if h.Product.Shape == Bar || h.Product.Shape == ShortCylinder {
+		share = 0.12 // of one of 30
 	}
 	for _, zero := range zeros {
 		frozen := h.At(p, at) < zero
@@ -315,8 +330,8 @@ func atIce(h *History, p Place, at float64) bool {
 	return false
 }
 
-// The error that a history states holds against a march with more nodes and a finer tolerance in time. Freezing bricks and short
-// cylinders are left out for the time that they take: bars go the same way. Ice in spheroids is refused.
+// The error that a history states holds against a march with more nodes and a finer tolerance in time. Freezing bricks are left out for the
+// time that they take: bars go the same way. Ice in spheroids is refused.
 func TestStatedErrorOfMarchesIsHonest(t *testing.T) {
 	if testing.Short() {
 		t.Skip("long")
@@ -326,10 +341,10 @@ func TestStatedErrorOfMarchesIsHonest(t *testing.T) {
 		e := effort{more: 1.7, tolK: 2e-4}
 		if d.freezes {
 			switch d.Shape {
-			case Brick, ShortCylinder, Spheroid:
+			case Brick, Spheroid:
 				return
-			case Bar:
-				e = effort{more: 2, tolK: 4e-3}
+			case Bar, ShortCylinder:
+				e = effort{more: 1.6, tolK: 1e-2}
 			default:
 				e = effort{more: 8, tolK: 5e-4}
 			}

@@ -12,7 +12,6 @@ type spaceAxis struct {
 	x            []float64 // nodes, in radii, or in the coordinate of a stretch
 	w            []float64 // their shares of the volume
 	k            []float64 // n×n, 1/m²: what a Kirchhoff integral at node j adds to the rate at node i
-	band         bool      // k has entries beside its diagonal only
 	fast         float64   // largest rate of decay of k, 1/m²
 	lower, upper *Face
 	face         [2]float64   // what a flow over the lower and upper face adds to the rate of its node, 1/m; 0 where there is none
@@ -32,11 +31,11 @@ func smoothAxis(kind axisKind, radiusM float64, n int, by stretch, faces [2]*Fac
 	return a
 }
 
-// cutAxis makes an axis of control volumes, for fields with a freezing front.
-func cutAxis(kind axisKind, radiusM float64, n int, faces [2]*Face) *spaceAxis {
-	g := newLineGrid(&Product{}, kind, radiusM, n, cutCrowd)
+// cutAxis makes an axis of control volumes, for fields with a freezing front; their nodes stand closer at a face by e to the power of crowd.
+func cutAxis(kind axisKind, radiusM float64, n int, crowd float64, faces [2]*Face) *spaceAxis {
+	g := newLineGrid(&Product{}, kind, radiusM, n, crowd)
 	m := newLineMesh(g)
-	a := &spaceAxis{kind: kind, n: len(g.x), w: m.share, line: m, band: true, lower: faces[0], upper: faces[1]}
+	a := &spaceAxis{kind: kind, n: len(g.x), w: m.share, line: m, lower: faces[0], upper: faces[1]}
 	a.x, a.k = make([]float64, a.n), make([]float64, a.n*a.n)
 	for i, x := range g.x {
 		a.x[i] = x / radiusM
@@ -69,7 +68,8 @@ func (a *spaceAxis) faces(radiusM float64) {
 // integrals of the heat contents, whose differences the axes turn into flows.
 type spaceMarch struct {
 	axes  [3]*spaceAxis
-	round *roundMesh // of a spheroid; nil else
+	round *roundMesh  // of a spheroid; nil else
+	ice   *iceVolumes // where a front of ice may move; nil else
 	n     int
 	law   *law
 	skins [3][2]*skin
@@ -90,6 +90,10 @@ func newSpaceMarch(axes [3]*spaceAxis, l *law, startC float64) *spaceMarch {
 	}
 	for i := range m.h {
 		m.h[i] = l.heat(startC)
+	}
+	if axes[0].line != nil {
+		m.ice = newIceVolumes(axes, l, startC)
+		copy(m.u, m.ice.start)
 	}
 	stride := [3]int{axes[1].n * axes[2].n, axes[2].n, 1}
 	for i := range m.h {
@@ -157,6 +161,17 @@ func (m *spaceMarch) conduct(u, out []float64) {
 		m.round.conduct(u, out)
 		return
 	}
+	if m.ice != nil {
+		m.ice.conduct(u, out)
+		for a := range m.skins {
+			for side, s := range m.skins[a] {
+				if s != nil && s.held { // the heat content of the medium itself
+					m.ice.even(m.spots[a][side])
+				}
+			}
+		}
+		return
+	}
 	clear(out)
 	n0, n1, n2 := m.axes[0].n, m.axes[1].n, m.axes[2].n
 	m.axes[0].apply(u, out, n1*n2)
@@ -175,12 +190,6 @@ func (a *spaceAxis) apply(u, out []float64, inner int) {
 	n := a.n
 	switch {
 	case n == 1:
-	case a.band:
-		for i := 0; i < n; i++ {
-			for j := max(0, i-1); j <= min(n-1, i+1); j++ {
-				add(out[i*inner:(i+1)*inner], a.k[i*n+j], u[j*inner:(j+1)*inner])
-			}
-		}
 	case inner == 1:
 		addRows(out, a.k, n, u)
 	default:
@@ -192,8 +201,12 @@ func (a *spaceAxis) apply(u, out []float64, inner int) {
 
 // rates fills out with the slopes in time of heat contents h, tau s into the step.
 func (m *spaceMarch) rates(h, out []float64, tau float64) {
-	for i, x := range h {
-		m.u[i] = m.law.kirchhoff(x)
+	if m.ice != nil {
+		m.ice.read(h, m.u)
+	} else {
+		for i, x := range h {
+			m.u[i] = m.law.kirchhoff(x)
+		}
 	}
 	m.conduct(m.u, out)
 	held := false
@@ -208,7 +221,7 @@ func (m *spaceMarch) rates(h, out []float64, tau float64) {
 			}
 			m.steep[a][side] = 0
 			for k, i := range m.spots[a][side] {
-				w, d := s.flux(m.law.temperature(h[i]), tau)
+				w, d := s.flux(m.temperature(h[i], i), tau)
 				m.steep[a][side] = max(m.steep[a][side], -d)
 				per := ax.face[side]
 				if m.round != nil {
@@ -246,9 +259,21 @@ func (m *spaceMarch) hold(h, rate []float64, tau float64) {
 	}
 }
 
+// temperature gives that of node i with heat content h at the last rates, °C.
+func (m *spaceMarch) temperature(h float64, i int) float64 {
+	if m.ice != nil {
+		t, _ := m.law.byU.temperature(m.u[i])
+		return t
+	}
+	return m.law.temperature(h)
+}
+
 func (m *spaceMarch) begin(tau float64) {
 	m.hold(m.h, nil, tau)
 	m.rates(m.h, m.f0, tau)
+	if m.ice != nil {
+		copy(m.ice.start, m.u)
+	}
 }
 
 // mostStages is how many stages a step may have: more would gather rounding.
@@ -263,6 +288,10 @@ func (m *spaceMarch) try(tau, d float64) float64 {
 	s2 := float64(stages*stages + stages - 2)
 	w1 := 4 / s2
 	h, y0, y1 := m.h, m.y2, m.y1
+	if m.ice != nil {
+		copy(m.u, m.ice.start)
+		m.conduct(m.u, m.f)
+	}
 	for i := range h {
 		y0[i] = h[i]
 		y1[i] = h[i] + w1/3*d*m.f0[i]
@@ -294,8 +323,7 @@ func (m *spaceMarch) try(tau, d float64) float64 {
 	worst := 0.0
 	for i, y := range m.y1 {
 		e := 0.8*(h[i]-y) + 0.4*d*(m.f0[i]+m.f[i])
-		_, _, slope, _ := m.law.at(y)
-		worst = max(worst, math.Abs(e*slope))
+		worst = max(worst, math.Abs(e*m.thinAt(y, i)))
 	}
 	if math.IsNaN(worst) {
 		return math.Inf(1)
@@ -303,14 +331,32 @@ func (m *spaceMarch) try(tau, d float64) float64 {
 	return worst
 }
 
+// thinAt is the slope of the temperature of node i by its heat content h at the last rates, m³·K/J.
+func (m *spaceMarch) thinAt(h float64, i int) float64 {
+	if m.ice == nil {
+		return m.law.thin(h)
+	}
+	_, du := m.ice.invert(h, m.u[i], i)
+	_, dt := m.law.byU.temperature(m.u[i])
+	return du * dt
+}
+
 func (m *spaceMarch) accept(k *track, t float64) {
 	m.h, m.y1 = m.y1, m.h
 	m.f0, m.f = m.f, m.f0
+	if m.ice != nil {
+		copy(m.ice.start, m.u)
+	}
 	m.keep(k, t)
 }
 
 func (m *spaceMarch) keep(k *track, t float64) {
 	h, slope := k.add(t)
+	if m.ice != nil {
+		copy(h, m.u)
+		m.ice.slopes(m.h, m.u, m.f0, slope)
+		return
+	}
 	copy(h, m.h)
 	copy(slope, m.f0)
 }
@@ -320,14 +366,35 @@ func (m *spaceMarch) firstS() float64 { return 2 / m.fastest() }
 
 func (m *spaceMarch) span() (low, high float64) {
 	low, high = math.Inf(1), math.Inf(-1)
+	if m.ice != nil {
+		for _, u := range m.u {
+			low, high = min(low, u), max(high, u)
+		}
+		low, _ = m.law.byU.temperature(low)
+		high, _ = m.law.byU.temperature(high)
+		return low, high
+	}
 	for _, h := range m.h {
 		low, high = min(low, h), max(high, h)
 	}
 	return m.law.temperature(low), m.law.temperature(high)
 }
 
-func (m *spaceMarch) save(float64) { m.kept = append(append(m.kept[:0], m.h...), m.f0...) }
-func (m *spaceMarch) restore()     { copy(m.h, m.kept[:m.n]); copy(m.f0, m.kept[m.n:]) }
+func (m *spaceMarch) save(float64) {
+	m.kept = append(append(m.kept[:0], m.h...), m.f0...)
+	if m.ice != nil {
+		m.kept = append(m.kept, m.ice.start...)
+	}
+}
+
+func (m *spaceMarch) restore() {
+	copy(m.h, m.kept[:m.n])
+	copy(m.f0, m.kept[m.n:])
+	if m.ice != nil {
+		copy(m.ice.start, m.kept[2*m.n:])
+		copy(m.u, m.ice.start)
+	}
+}
 
 // fastest gives the largest diffusivity, m²/s, and the largest slope of temperature by heat content, m³·K/J, between two temperatures.
 func (l *law) fastest(low, high float64) (spread, thin float64) {

@@ -41,6 +41,13 @@ func (f *marched) course(x coord, times, out []float64) {
 		}
 		return
 	}
+	if f.track.ice != nil {
+		for i, t := range times {
+			f.track.raw(f.track.find(t), f.now)
+			out[i], _ = f.track.ice.byU.temperature(f.mesh.at(x, f.now))
+		}
+		return
+	}
 	for i, t := range times {
 		f.track.all(f.track.find(t), f.now)
 		out[i] = f.mesh.at(x, f.now)
@@ -89,6 +96,9 @@ func (f *marched) method() string {
 // leaves out the nodes beside the front: a place there warms by degrees in seconds when the front passes, in both marches, but not in
 // the same second.
 func (f *marched) differs(h *History, rough *marched) float64 {
+	if f.track.ice != nil {
+		return f.differsByIce(h, rough)
+	}
 	worst := 0.0
 	mine, other, there := make([]float64, f.track.n), make([]float64, rough.track.n), make([]float64, f.track.n)
 	end := rough.track.times[len(rough.track.times)-1]
@@ -130,4 +140,64 @@ func (f *marched) atFront(mine, there []float64, j int) bool {
 	beside := false
 	f.mesh.neighbours(j, func(k int) { beside = beside || mine[k] < zero != frozen || there[k] < zero != frozen })
 	return beside
+}
+
+// lately is the share of the time since a change of surroundings in which a front of ice has just passed.
+const lately = 0.02
+
+// differsByIce is differs where a front moves in two or three directions. It looks at the nodes of the rougher march, which lie further from
+// what stands between those of the finer one, and leaves out what lies within two of its volumes from a front now or lately: the last ice
+// goes in a moment.
+func (f *marched) differsByIce(h *History, rough *marched) float64 {
+	worst := 0.0
+	n := rough.track.n
+	mine, fine, other := make([]float64, f.track.n), make([]float64, n), make([]float64, n)
+	end := rough.track.times[len(rough.track.times)-1]
+	onto := f.mesh.onto(rough.mesh)
+	look := func(t float64) {
+		f.track.raw(f.track.find(t), mine)
+		rough.track.raw(rough.track.find(min(t, end)), other)
+		onto(mine, fine)
+	}
+	cold, warm, next := make([]bool, n), make([]bool, n), make([]bool, n)
+	spread := func(here []bool) {
+		for range 2 {
+			copy(next, here)
+			for j, is := range here {
+				if is {
+					rough.mesh.neighbours(j, func(k int) { next[k] = true })
+				}
+			}
+			copy(here, next)
+		}
+	}
+	for i := range h.Spans {
+		sp := &h.Spans[i]
+		for tau := h.settle; ; tau *= 1.1 {
+			t := min(sp.StartS+tau, sp.EndS)
+			clear(cold)
+			clear(warm)
+			for _, at := range [2]float64{t - lately*(t-sp.StartS), t} {
+				look(at)
+				for j, u := range other {
+					cold[j] = cold[j] || u < 0 || fine[j] < 0
+					warm[j] = warm[j] || u >= 0 || fine[j] >= 0
+				}
+			}
+			spread(cold)
+			spread(warm)
+			for j, u := range other {
+				if cold[j] && warm[j] {
+					continue
+				}
+				a, _ := f.track.ice.byU.temperature(u)
+				b, _ := f.track.ice.byU.temperature(fine[j])
+				worst = max(worst, math.Abs(a-b))
+			}
+			if t == sp.EndS {
+				break
+			}
+		}
+	}
+	return worst
 }

@@ -128,7 +128,7 @@ func (s *solver) layOut() {
 	alpha := q.KWmK / (q.RhoKgM3 * q.CJkgK)
 	if s.settle = s.options.ErrorFromS; s.settle == 0 {
 		s.settle = settleS
-		if marches && s.polynomial() && s.used > 1 {
+		if marches && s.used > 1 && (s.polynomial() || s.front) {
 			s.settle = marchSettleS
 		}
 		for a := 0; a < s.used; a++ {

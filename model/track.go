@@ -13,6 +13,7 @@ type track struct {
 	times []float64
 	data  []float64 // by instant: n temperatures, °C, or heat contents, J/m³, then n slopes of them
 	laws  []*law    // by node, of heat contents; nil: temperatures are kept
+	ice   *law      // of all nodes: Kirchhoff integrals are kept
 	last  int       // the interval that was looked at last
 }
 
@@ -69,13 +70,25 @@ func cubicAt(i int, x, d float64) between {
 	return between{i, 1 + y*(2*x-3), d * x * (1 + x*(x-2)), y * (3 - 2*x), d * y * (x - 1)}
 }
 
-// all fills out with the temperatures of all nodes.
-func (k *track) all(b between, out []float64) {
+// raw fills out with what is kept of all nodes.
+func (k *track) raw(b between, out []float64) {
 	a := k.data[2*k.n*b.i : 2*k.n*(b.i+2)]
 	n := k.n
 	c0, s0, c1, s1 := a[:n], a[n:2*n], a[2*n:3*n], a[3*n:4*n]
 	for j := range out[:n] {
 		out[j] = b.c0*c0[j] + b.s0*s0[j] + b.c1*c1[j] + b.s1*s1[j]
+	}
+}
+
+// all fills out with the temperatures of all nodes.
+func (k *track) all(b between, out []float64) {
+	n := k.n
+	k.raw(b, out)
+	if k.ice != nil {
+		for j, u := range out[:n] {
+			out[j], _ = k.ice.byU.temperature(u)
+		}
+		return
 	}
 	for j, l := range k.laws {
 		out[j] = l.temperature(out[j])
@@ -85,6 +98,10 @@ func (k *track) all(b between, out []float64) {
 // kept gives the temperature of a node at instant i, °C.
 func (k *track) kept(i, j int) float64 {
 	c := k.data[2*k.n*i+j]
+	if k.ice != nil {
+		t, _ := k.ice.byU.temperature(c)
+		return t
+	}
 	if k.laws != nil {
 		return k.laws[j].temperature(c)
 	}
