@@ -391,6 +391,11 @@ func byAxes(by *[3][]float64, n [3]int, in, x, y, out []float64) {
 		}
 		rows, lines := len(by[a])/n[a], len(in)/n[a]
 		to = to[:rows*lines]
+		if lines == 1 {
+			clear(to)
+			addRows(to, by[a], n[a], in)
+			return
+		}
 		all := blas64.General{Rows: lines, Cols: n[a], Stride: n[a], Data: in}
 		for i := 0; i < rows; i++ {
 			blas64.Gemv(blas.NoTrans, 1, all, blas64.Vector{N: n[a], Inc: 1, Data: by[a][i*n[a] : (i+1)*n[a]]}, 0, blas64.Vector{N: lines, Inc: 1, Data: to[i*lines : (i+1)*lines]})
