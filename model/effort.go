@@ -86,7 +86,7 @@ func (s *solver) firstEffort() (e effort, worse float64) {
 	}
 	e.tolK = 8e-3
 	if s.used == 3 {
-		e.more = 1.1
+		e.more, e.tolK = 1.1, 1.2e-2 // most of the error is that of the space
 	}
 	if s.used == 1 && (s.kinds[0] == radial || s.kinds[0] == spherical) {
 		return e, roundWorse

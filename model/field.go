@@ -129,9 +129,12 @@ func (s *slab) back(to slab) {
 }
 
 // scratch is memory for what does not outlive one solution: a second field, and what is needed within a call.
-type scratch struct{ field, call slab }
+type scratch struct {
+	field, call slab
+	rough       []float64 // what the track of a rougher march kept
+}
 
-var scratches = sync.Pool{New: func() any { return &scratch{slab{wide: 1}, slab{wide: 1}} }}
+var scratches = sync.Pool{New: func() any { return &scratch{field: slab{wide: 1}, call: slab{wide: 1}} }}
 
 // again makes all of it free.
 func (s *scratch) again() { s.field.free, s.call.free = s.field.all, s.call.all }

@@ -168,8 +168,19 @@ func (l *law) at(h float64) (t, u, dt, du float64) {
 
 // temperature gives that of a heat content, °C.
 func (l *law) temperature(h float64) float64 {
-	t, _, _, _ := l.at(h)
+	t, _ := l.warmth(h)
 	return t
+}
+
+// warmth gives the temperature of a heat content, °C, and its slope by it, m³·K/J.
+func (l *law) warmth(h float64) (t, dt float64) {
+	r, x, per := l.row(h)
+	if x > 1 {
+		t, _, dt, _ := l.at(h)
+		return t, dt
+	}
+	a := &r.t
+	return a[0] + x*(a[1]+x*(a[2]+x*a[3])), (a[1] + x*(2*a[2]+x*3*a[3])) * per
 }
 
 // kirchhoff gives the integral of a heat content, W/m.
@@ -181,6 +192,24 @@ func (l *law) kirchhoff(h float64) float64 {
 	}
 	b := &r.u
 	return b[0] + x*(b[1]+x*(b[2]+x*b[3]))
+}
+
+// kirchhoffs fills out with the integrals, W/m, times per, of the heat contents v times rhoC.
+func (l *law) kirchhoffs(v []float64, rhoC, per float64, out []float64) {
+	rows, scale := l.warm.rows, rhoC*l.warm.per
+	last := float64(len(rows) - 1)
+	out = out[:len(v)]
+	for i, v := range v {
+		x := v * scale
+		if x >= 0 && x < last {
+			k := int(x)
+			b := &rows[k].u
+			x -= float64(k)
+			out[i] = (b[0] + x*(b[1]+x*(b[2]+x*b[3]))) * per
+			continue
+		}
+		out[i] = l.kirchhoff(v*rhoC) * per
+	}
 }
 
 // heat gives the heat content of a temperature, J/m³: the inverse of temperature.

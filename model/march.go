@@ -75,6 +75,7 @@ func (s *solver) march() (*History, error) {
 		}
 		s.chain, s.main = chain, fine
 		h.ErrorK = max(1e-5, fine.differs(h, rough)/worse)
+		s.tmp.rough = rough.track.data[:0]
 		if h.ErrorK <= marchGoalK || tries == s.mostTries() || len(fine.track.data) > againKept || s.wetFaces() && len(fine.track.times) > againSteps {
 			s.warn(h)
 			return h, nil

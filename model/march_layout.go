@@ -6,6 +6,9 @@ import "math"
 func (s *solver) newMarched(e effort) *marched {
 	laws := s.lawsOf()
 	f := &marched{track: &track{}}
+	if e.rough {
+		f.track.data = s.tmp.rough
+	}
 	switch {
 	case s.product.Shape == Spheroid:
 		s.layRound(f, laws[0], e)
@@ -80,10 +83,13 @@ func (s *solver) laySpace(f *marched, l *law, e effort) {
 		}
 		by[a] = s.stretchOf(a)
 		axes[a] = smoothAxis(s.kinds[a], s.radii[a], s.smoothNodes(a, e), by[a], s.faces[a])
-		axes[a].bodyNodes(nd, a)
+		axes[a].bodyNodes(nd, a, s.used)
 	}
-	march := newSpaceMarch(axes, l, s.product.StartC)
-	f.state, f.mesh = march, newSpaceMesh(axes)
+	march, mesh := newSpaceMarch(axes, l, s.product.StartC), newSpaceMesh(axes)
+	if !front {
+		mesh.seenAt(nd)
+	}
+	f.state, f.mesh = march, mesh
 	if !front {
 		f.state = newModesMarch(march, e.tolK/4)
 	}
@@ -185,12 +191,9 @@ func (e effort) volumes(n int) int {
 	return int(math.Round(float64(n) * e.more))
 }
 
-// bodyNodes gives the nodes that a body looks at: those of the axis, and a centre of symmetry.
-func (a *spaceAxis) bodyNodes(nd *nodes, axis int) {
-	x := a.x
-	if a.kind != planeFull {
-		x = append([]float64{0}, x...)
-	}
+// bodyNodes gives the nodes that a body with so many used axes looks at on an axis of polynomials, one with three as close as one with two.
+func (a *spaceAxis) bodyNodes(nd *nodes, axis, used int) {
+	x := nodesOf(a.kind, min(used, 2), a.n, false)
 	nd.x[axis], nd.phi[axis] = x, make([]float64, len(x)*a.n)
 	for g, at := range x {
 		a.poly.values(at, nd.phi[axis][g*a.n:(g+1)*a.n], nil)

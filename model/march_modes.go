@@ -15,10 +15,14 @@ type modesMarch struct {
 	rhoC, k         float64       // the middle ones, J/(m³·K), W/(m·K)
 	films           [3][2]float64 // W/(m²·K), by axis and face
 	decay           [3][]float64  // by axis, 1/s
+	rate            []float64     // by mode, 1/s
 	to, from        [3][]float64  // n×n, by axis: values at the nodes in modes and back
+	look            [3][]float64  // by axis: the rows of from of every other node from the face on
+	seen            []int         // the nodes that these rows give
 	c, n0           []float64     // modes, K, and what is left over, K/s, now
 	a, na, next, n1 []float64     // first look at the end of a step, and the end
 	e, p1, p2, p3   []float64     // by mode, for a step: see phis
+	end, more       []float64     // at the nodes: the end of the last try before it was corrected, and the correction, K
 	before, bend    []float64     // what was left over at the start of the step before, and half its second slope in time, K/s³
 	savedAt         float64       // s into the step
 	lastS           float64       // length of the step before, s; 0: there is none in these modes
@@ -35,10 +39,31 @@ const keptW = 1e7
 func newModesMarch(m *spaceMarch, tolK float64) *modesMarch {
 	f := &modesMarch{spaceMarch: m, tolK: tolK}
 	f.mem.wide = 1
-	for _, s := range []*[]float64{&f.c, &f.n0, &f.a, &f.na, &f.next, &f.n1, &f.e, &f.p1, &f.p2, &f.p3, &f.before, &f.bend, &f.x, &f.y, &f.z, &f.nodal} {
+	for _, s := range []*[]float64{&f.c, &f.n0, &f.a, &f.na, &f.next, &f.n1, &f.e, &f.p1, &f.p2, &f.p3, &f.before, &f.bend, &f.end, &f.more, &f.x, &f.y, &f.z, &f.nodal} {
 		*s = make([]float64, m.n)
 	}
+	f.everyOther()
 	return f
+}
+
+// everyOther chooses the nodes at which the track is held to the march on the way: every other one of an axis, faces among them.
+func (m *modesMarch) everyOther() {
+	var on [3][]int
+	for a, ax := range m.axes {
+		for i := 0; i < ax.n; i++ {
+			if (ax.n-1-i)%2 == 0 || i == 0 && ax.face[0] > 0 {
+				on[a] = append(on[a], i)
+			}
+		}
+		m.look[a] = make([]float64, len(on[a])*ax.n)
+	}
+	for _, i := range on[0] {
+		for _, j := range on[1] {
+			for _, k := range on[2] {
+				m.seen = append(m.seen, (i*m.axes[1].n+j)*m.axes[2].n+k)
+			}
+		}
+	}
 }
 
 // surround chooses the linear problem of a step.
@@ -74,12 +99,15 @@ func (m *modesMarch) leave() {
 	}
 }
 
+// alone and one are the decay and the matrix of an axis without extent.
+var alone, one = []float64{0}, []float64{1}
+
 // linearize makes the modes of films as steep as the surfaces are tau s into the step, and brings the state into them.
 func (m *modesMarch) linearize(tau float64) {
 	m.mem.free = m.mem.all
 	for a, ax := range m.axes {
 		if ax.n == 1 {
-			m.decay[a], m.to[a], m.from[a] = []float64{0}, []float64{1}, []float64{1}
+			m.decay[a], m.to[a], m.from[a] = alone, one, one
 			continue
 		}
 		for side, s := range m.skins[a] {
@@ -89,6 +117,15 @@ func (m *modesMarch) linearize(tau float64) {
 			}
 		}
 		m.decay[a], m.to[a], m.from[a] = ax.modes(&m.mem, m.k/m.rhoC, [2]float64{m.films[a][0] / m.rhoC, m.films[a][1] / m.rhoC})
+	}
+	m.lookAgain()
+	m.rate = m.rate[:0]
+	for _, p := range m.decay[0] {
+		for _, q := range m.decay[1] {
+			for _, r := range m.decay[2] {
+				m.rate = append(m.rate, p+q+r)
+			}
+		}
 	}
 	for i, h := range m.h {
 		m.nodal[i] = h / m.rhoC
@@ -176,90 +213,142 @@ func (m *modesMarch) middle(low, high float64) {
 	m.k = (least + most) / 2 * m.rhoC
 }
 
-// along applies one n×n matrix by axis.
+// lookAgain fills look.
+func (m *modesMarch) lookAgain() {
+	for a, ax := range m.axes {
+		n, rows := ax.n, len(m.look[a])/ax.n
+		for r := rows - 1; r >= 0; r-- {
+			i := max(0, n-1-2*(rows-1-r))
+			copy(m.look[a][r*n:(r+1)*n], m.from[a][i*n:(i+1)*n])
+		}
+	}
+}
+
+// along applies one matrix by axis.
 func (m *modesMarch) along(by *[3][]float64, in, out []float64) {
-	n0, n1, n2 := m.axes[0].n, m.axes[1].n, m.axes[2].n
-	if n1*n2 == 1 {
-		clear(out)
-		addRows(out, by[0], n0, in)
-		return
-	}
-	along(in, m.x, by[0], 1, n0, n1*n2)
-	if n2 == 1 {
-		along(m.x, out, by[1], n0, n1, 1)
-		return
-	}
-	along(m.x, m.y, by[1], n0, n1, n2)
-	along(m.y, out, by[2], n0*n1, n2, 1)
+	byAxes(by, [3]int{m.axes[0].n, m.axes[1].n, m.axes[2].n}, in, m.x, m.y, out)
 }
 
 func (m *modesMarch) modes(nodal, out []float64) { m.along(&m.to, nodal, out) }
 func (m *modesMarch) nodes(modes, out []float64) { m.along(&m.from, modes, out) }
 
-// left fills out, in modes, with what the linear problem leaves over of the rates of a state in modes, K/s.
-func (m *modesMarch) left(modes, out []float64, tau float64) {
-	m.nodes(modes, m.nodal)
-	for i, v := range m.nodal {
-		m.u[i] = (m.law.kirchhoff(v*m.rhoC) - m.k*v) / m.rhoC
+// left fills out, in modes, with what the linear problem leaves over of the rates of a state in modes, K/s, and nodal with the state at the
+// nodes. Conduction in modes is their decay less what the films of the linear problem take, so that only what stands at the faces needs more
+// than one way from the nodes to the modes.
+func (m *modesMarch) left(modes, nodal, out []float64, tau float64) {
+	m.nodes(modes, nodal)
+	m.law.kirchhoffs(nodal, m.rhoC, 1/m.k, m.u)
+	for i, v := range nodal {
+		m.u[i] -= v
 	}
-	m.conduct(m.u, m.f)
+	m.modes(m.u, out)
+	for i, r := range m.rate {
+		out[i] *= -r
+	}
 	for a, ax := range m.axes {
 		for side, s := range m.skins[a] {
 			if s == nil || s.insulated {
 				continue
 			}
-			w := m.films[a][side]
-			heldV := 0.0
+			w, per := m.films[a][side], ax.face[side]/m.rhoC
+			at := m.f[:len(m.spots[a][side])]
 			if s.held {
-				heldV = m.law.heat(s.mediumC(tau)) / m.rhoC
-			}
-			per := ax.face[side] / m.rhoC
-			for _, i := range m.spots[a][side] {
-				v := m.nodal[i]
-				if s.held {
-					m.f[i] += per * w * heldV
-					continue
+				medium := m.law.heat(s.mediumC(tau)) / m.rhoC
+				for k, i := range m.spots[a][side] {
+					at[k] = per * w * (medium + m.u[i])
 				}
-				q, _ := s.flux(m.law.temperature(v*m.rhoC), tau)
-				m.f[i] += per * (q + w*v)
+			} else {
+				for k, i := range m.spots[a][side] {
+					v := nodal[i]
+					q, _ := s.flux(m.law.temperature(v*m.rhoC), tau)
+					at[k] = per * (q + w*(v+m.u[i]))
+				}
 			}
+			m.addFace(a, side, at, out)
 		}
 	}
-	m.modes(m.f, out)
+}
+
+// addFace adds to modes what stands at the nodes of a face, which it overwrites.
+func (m *modesMarch) addFace(a, side int, at, out []float64) {
+	p, q := (a+1)%3, (a+2)%3 // the axes of the face, in their order
+	if p > q {
+		p, q = q, p
+	}
+	np, nq := m.axes[p].n, m.axes[q].n
+	if np*nq > 1 {
+		x, y := m.x[:len(at)], m.y[:len(at)]
+		along(at, x, m.to[p], 1, np, nq)
+		at = x
+		if nq > 1 {
+			along(x, y, m.to[q], np, nq, 1)
+			at = y
+		}
+	}
+	n := m.axes[a].n
+	node := 0
+	if side == 1 {
+		node = n - 1
+	}
+	to := m.to[a]
+	switch a {
+	case 0:
+		for i := 0; i < n; i++ {
+			add(out[i*len(at):(i+1)*len(at)], to[i*n+node], at)
+		}
+	case 1:
+		for g := 0; g < np; g++ {
+			for i := 0; i < n; i++ {
+				add(out[(g*n+i)*nq:(g*n+i+1)*nq], to[i*n+node], at[g*nq:(g+1)*nq])
+			}
+		}
+	default:
+		col := m.x[len(m.x)-n:]
+		for i := range col {
+			col[i] = to[i*n+node]
+		}
+		for g, x := range at {
+			add(out[g*n:(g+1)*n], x, col)
+		}
+	}
 }
 
 func (m *modesMarch) begin(tau float64) {
-	m.left(m.c, m.n0, tau)
+	m.left(m.c, m.nodal, m.n0, tau)
 	m.lastS = 0
 }
 
 // phis fills what is left of the modes and the functions φ1, φ2 and φ3 of the scheme, times d, for a time d after the start of a step.
 func (m *modesMarch) phis(d float64) {
 	var e [3][maxDegrees]float64
-	for a := range m.axes {
+	for a := range m.decay {
 		for i, r := range m.decay[a] {
 			e[a][i] = math.Exp(-r * d)
 		}
 	}
+	n := len(m.decay[2])
 	i := 0
-	for j, x := range m.decay[0] {
-		for k, y := range m.decay[1] {
-			for l, r := range m.decay[2] {
-				z := (x + y + r) * d
-				left := e[0][j] * e[1][k] * e[2][l]
-				m.e[i] = left
+	for j := range m.decay[0] {
+		for k := range m.decay[1] {
+			before, rates := e[0][j]*e[1][k], m.rate[i:i+n]
+			left, f1, f2, f3, last := m.e[i:][:n], m.p1[i:][:n], m.p2[i:][:n], m.p3[i:][:n], e[2][:n]
+			i += n
+			for l, r := range rates {
+				z := r * d
+				x := before * last[l]
+				left[l] = x
 				var p1, p2, p3 float64
 				if z < 0.05 { // the series, where the quotients lose digits
 					p3 = 1.0/6 - z/24*(1-z/5*(1-z/6*(1-z/7)))
 					p2 = 0.5 - z*p3
 					p1 = 1 - z*p2
 				} else {
-					p1 = (1 - left) / z
-					p2 = (1 - p1) / z
-					p3 = (0.5 - p2) / z
+					per := 1 / z
+					p1 = (1 - x) * per
+					p2 = (1 - p1) * per
+					p3 = (0.5 - p2) * per
 				}
-				m.p1[i], m.p2[i], m.p3[i] = d*p1, d*p2, d*p3
-				i++
+				f1[l], f2[l], f3[l] = d*p1, d*p2, d*p3
 			}
 		}
 	}
@@ -267,32 +356,40 @@ func (m *modesMarch) phis(d float64) {
 
 func (m *modesMarch) try(tau, d float64) float64 {
 	m.phis(d)
-	for i, c := range m.c {
-		m.a[i] = m.e[i]*c + m.p1[i]*m.n0[i]
+	c, n := m.c, len(m.c)
+	e, p1, p2, p3 := m.e[:n], m.p1[:n], m.p2[:n], m.p3[:n]
+	n0, na, n1, a, next, z := m.n0[:n], m.na[:n], m.n1[:n], m.a[:n], m.next[:n], m.z[:n]
+	for i, c := range c {
+		a[i] = e[i]*c + p1[i]*n0[i]
 	}
-	m.left(m.a, m.na, tau+d)
-	for i, a := range m.a {
-		m.next[i] = a + m.p2[i]*(m.na[i]-m.n0[i])
+	m.left(a, m.nodal, na, tau+d)
+	for i, a := range a {
+		next[i] = a + p2[i]*(na[i]-n0[i])
 	}
-	m.left(m.next, m.n1, tau+d)
-	if m.lastS == 0 {
+	m.left(next, m.end, n1, tau+d)
+	before, bend := m.before[:n], m.bend[:n]
+	if m.lastS > 0 {
+		perD, perLast, perBoth := 1/d, 1/m.lastS, 1/(d+m.lastS)
+		for i, n := range n1 {
+			bend[i] = ((n-n0[i])*perD - (n0[i]-before[i])*perLast) * perBoth
+		}
+	} else {
 		m.halfway(tau, d)
 	}
-	for i, n := range m.n1 {
-		if m.lastS > 0 {
-			m.bend[i] = ((n-m.n0[i])/d - (m.n0[i]-m.before[i])/m.lastS) / (d + m.lastS)
-		}
-		m.z[i] = m.p2[i]*(n-m.na[i]) + m.bend[i]*d*d*(2*m.p3[i]-m.p2[i])
-		m.next[i] += m.z[i]
+	for i, n := range n1 {
+		z[i] = p2[i]*(n-na[i]) + bend[i]*d*d*(2*p3[i]-p2[i])
+		next[i] += z[i]
 	}
-	m.nodes(m.z, m.nodal)
-	worst := 0.0
-	for _, v := range m.nodal {
-		worst = max(worst, math.Abs(v))
-	}
+	m.nodes(z, m.more)
 	m.length, m.tau = d, tau+d
-	if math.IsNaN(worst) {
-		return math.Inf(1)
+	worst := 0.0
+	for _, v := range m.more {
+		if v = math.Abs(v); !(v <= worst) {
+			if math.IsNaN(v) {
+				return math.Inf(1)
+			}
+			worst = v
+		}
 	}
 	return worst
 }
@@ -303,37 +400,40 @@ func (m *modesMarch) halfway(tau, d float64) {
 	for i, c := range m.c {
 		m.a[i] = m.e[i]*c + m.p1[i]*m.n0[i] + m.p2[i]*(m.n1[i]-m.n0[i])/2
 	}
-	m.left(m.a, m.bend, tau+d/2)
+	m.left(m.a, m.more, m.bend, tau+d/2)
 	for i, n := range m.bend {
 		m.bend[i] = 2 * (m.n0[i] + m.n1[i] - 2*n) / (d * d)
 	}
 	m.phis(d)
 }
 
-// at gives the temperatures of the nodes and their slopes in time, x s after the start of the last try.
-func (m *modesMarch) at(x float64, c, slope []float64) {
+// way fills a with the modes x s after the start of the last try.
+func (m *modesMarch) way(x float64) {
 	m.phis(x)
-	share := x / m.length
-	i := 0
-	for _, p := range m.decay[0] {
-		for _, q := range m.decay[1] {
-			for _, r := range m.decay[2] {
-				more := (m.n1[i] - m.n0[i]) * share
-				m.a[i] = m.e[i]*m.c[i] + m.p1[i]*m.n0[i] + m.p2[i]*more + m.bend[i]*x*(2*x*m.p3[i]-m.length*m.p2[i])
-				m.z[i] = m.n0[i] + more + m.bend[i]*x*(x-m.length) - (p+q+r)*m.a[i]
-				i++
-			}
-		}
+	share, n := x/m.length, len(m.c)
+	e, p1, p2, p3, n0, n1, bend, a := m.e[:n], m.p1[:n], m.p2[:n], m.p3[:n], m.n0[:n], m.n1[:n], m.bend[:n], m.a[:n]
+	for i, c := range m.c {
+		a[i] = e[i]*c + p1[i]*n0[i] + p2[i]*(n1[i]-n0[i])*share + bend[i]*x*(2*x*p3[i]-m.length*p2[i])
 	}
-	m.row(m.a, m.z, c, slope)
 }
 
-// row turns modes and their slopes in time into temperatures of nodes and theirs.
-func (m *modesMarch) row(modes, slopes, c, slope []float64) {
-	m.nodes(modes, c)
+// at gives the temperatures of the nodes and their slopes in time where way has been.
+func (m *modesMarch) at(x float64, c, slope []float64) {
+	share := x / m.length
+	for i, n := range m.n0 {
+		m.z[i] = n + (m.n1[i]-n)*share + m.bend[i]*x*(x-m.length)
+	}
+	m.rest(m.a, m.z)
+	m.nodes(m.a, c)
+	m.row(m.z, c, slope)
+}
+
+// row turns the state at the nodes into temperatures, and the slopes of modes in time into theirs.
+func (m *modesMarch) row(slopes, c, slope []float64) {
 	m.nodes(slopes, slope)
+	slope = slope[:len(c)]
 	for i, v := range c {
-		t, _, dt, _ := m.law.at(v * m.rhoC)
+		t, dt := m.law.warmth(v * m.rhoC)
 		c[i], slope[i] = t, slope[i]*dt*m.rhoC
 	}
 }
@@ -342,36 +442,34 @@ func (m *modesMarch) row(modes, slopes, c, slope []float64) {
 func (m *modesMarch) keep(k *track, t float64) {
 	c, slope := k.add(t)
 	m.rest(m.c, m.n0)
-	m.row(m.c, m.z, c, slope)
+	m.nodes(m.c, c)
+	m.row(m.z, c, slope)
 }
 
 // rest fills z with the slopes of modes.
 func (m *modesMarch) rest(modes, left []float64) {
-	i := 0
-	for _, p := range m.decay[0] {
-		for _, q := range m.decay[1] {
-			for _, r := range m.decay[2] {
-				m.z[i] = left[i] - (p+q+r)*modes[i]
-				i++
-			}
-		}
+	n := len(modes)
+	z, left, rate := m.z[:n], left[:n], m.rate[:n]
+	for i, c := range modes {
+		z[i] = left[i] - rate[i]*c
 	}
 }
 
 // accept makes the last try the state, and keeps so many instants on the way to t that the cubics between them follow it.
 func (m *modesMarch) accept(k *track, t float64) {
-	for len(m.rows) < mostHalvings+3 {
+	for len(m.rows) < mostHalvings+2 {
 		m.rows = append(m.rows, make([]float64, 2*m.n))
 	}
 	n := m.n
-	start, end := m.rows[mostHalvings+1], m.rows[mostHalvings+2]
-	c, slope := k.row(len(k.times) - 1)
-	copy(start, c)
-	copy(start[n:], slope)
+	start, end := k.whole(len(k.times)-1), m.rows[mostHalvings+1]
 	m.rest(m.next, m.n1)
-	m.row(m.next, m.z, end[:n], end[n:])
+	more := m.more[:n]
+	for i, v := range m.end {
+		end[i] = v + more[i]
+	}
+	m.row(m.z, end[:n], end[n:])
 	m.between(k, instant{t - m.length, 0, start}, instant{t - m.length, m.length, end}, 0)
-	c, slope = k.add(t)
+	c, slope := k.add(t)
 	copy(c, end)
 	copy(slope, end[n:])
 	m.c, m.next = m.next, m.c
@@ -401,15 +499,18 @@ func (m *modesMarch) between(k *track, lo, hi instant, depth int) {
 	}
 	n := m.n
 	mid := instant{lo.t0, (lo.x + hi.x) / 2, m.rows[depth]}
-	m.at(mid.x, mid.row[:n], mid.row[n:])
+	m.way(mid.x)
+	seen := m.nodal[:len(m.seen)]
+	m.along(&m.look, m.a, seen)
 	worst, d := 0.0, hi.x-lo.x
-	for i := 0; i < n; i++ {
+	for k, i := range m.seen {
 		guess := (lo.row[i]+hi.row[i])/2 + d/8*(lo.row[n+i]-hi.row[n+i])
-		worst = max(worst, math.Abs(guess-mid.row[i]))
+		worst = max(worst, math.Abs(guess-m.law.temperature(seen[k]*m.rhoC)))
 	}
 	if worst < m.tolK {
 		return
 	}
+	m.at(mid.x, mid.row[:n], mid.row[n:])
 	// A cubic's error falls with the fourth power of its length: the halves are good where the whole was off by less than 16 times.
 	good := worst < 12*m.tolK
 	if !good {

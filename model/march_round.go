@@ -111,7 +111,8 @@ func (s *solver) layRound(f *marched, l *law, e effort) {
 	march.round = m
 	f.state, f.mesh = march, m
 	nd := &nodes{x: [3][]float64{{0}, {0}, {0}}, phi: [3][]float64{{1}, {1}, {1}}}
-	m.axes[0].bodyNodes(nd, 0)
-	m.axes[1].bodyNodes(nd, 1)
+	m.axes[0].bodyNodes(nd, 0, s.used)
+	m.axes[1].bodyNodes(nd, 1, s.used)
+	m.seenAt(nd)
 	f.body = newBody(body{kinds: [3]axisKind{spherical, planeHalf}, radii: s.radii, ball: s.ball}, nd)
 }

@@ -3,6 +3,9 @@ package model
 import (
 	"fmt"
 	"math"
+
+	"gonum.org/v1/gonum/blas"
+	"gonum.org/v1/gonum/blas/blas64"
 )
 
 // spaceAxis is an axis of a body that is marched in more than one direction.
@@ -410,6 +413,8 @@ type spaceMesh struct {
 	axes [3]*spaceAxis
 	n    int
 	w    []float64
+	body [3][]float64 // by axis of polynomials: the weights of its nodes at those of the body
+	x, y []float64
 }
 
 func newSpaceMesh(axes [3]*spaceAxis) *spaceMesh {
@@ -422,6 +427,48 @@ func newSpaceMesh(axes [3]*spaceAxis) *spaceMesh {
 		}
 	}
 	return m
+}
+
+// seenAt makes ready to fill the nodes of a body.
+func (m *spaceMesh) seenAt(nd *nodes) {
+	for a, ax := range m.axes {
+		m.body[a] = make([]float64, len(nd.x[a])*ax.n)
+		for g, x := range nd.x[a] {
+			ax.valueAt(x, m.body[a][g*ax.n:(g+1)*ax.n])
+		}
+	}
+	n, last := m.axes[0].n, len(nd.x[2])
+	m.x, m.y = make([]float64, n*m.axes[1].n*last), make([]float64, n*len(nd.x[1])*last)
+}
+
+// byAxes applies a matrix by axis to n[0]×n[1]×n[2] numbers, by way of x and y. It goes from the last axis to the first: each comes first in
+// what it leaves, so that after the first all is in order again.
+func byAxes(by *[3][]float64, n [3]int, in, x, y, out []float64) {
+	used := 1
+	for used < 3 && n[used] > 1 {
+		used++
+	}
+	for a := used - 1; a >= 0; a-- {
+		to := x
+		switch a {
+		case 0:
+			to = out
+		case 1:
+			to = y
+		}
+		rows, lines := len(by[a])/n[a], len(in)/n[a]
+		to = to[:rows*lines]
+		if lines == 1 {
+			clear(to)
+			addRows(to, by[a], n[a], in)
+			return
+		}
+		all := blas64.General{Rows: lines, Cols: n[a], Stride: n[a], Data: in}
+		for i := 0; i < rows; i++ {
+			blas64.Gemv(blas.NoTrans, 1, all, blas64.Vector{N: n[a], Inc: 1, Data: by[a][i*n[a] : (i+1)*n[a]]}, 0, blas64.Vector{N: lines, Inc: 1, Data: to[i*lines : (i+1)*lines]})
+		}
+		in = to
+	}
 }
 
 func (m *spaceMesh) weights() []float64 { return m.w }
@@ -521,52 +568,20 @@ func (a *spaceAxis) onto(other *spaceAxis) func(here, there []float64) {
 	}
 }
 
-// fill gives the temperatures at the nodes of the body: those of the march, and on axes of polynomials the centre of symmetry.
+// fill gives the temperatures at the nodes of the body.
 func (m *spaceMesh) fill(c, out []float64) {
 	if m.axes[0].poly == nil {
 		copy(out, c)
 		return
 	}
-	n := [3]int{m.axes[0].n, m.axes[1].n, m.axes[2].n}
-	var more [3]int // a node of the body before those of the march
-	var zero [3][maxDegrees]float64
-	for a, ax := range m.axes {
-		if ax.n > 1 && ax.kind != planeFull {
-			more[a] = 1
-			ax.valueAt(0, zero[a][:ax.n])
-		}
-	}
-	w1, w2 := n[1]+more[1], n[2]+more[2]
-	for i := 0; i < n[0]; i++ {
-		plane := out[(i+more[0])*w1*w2:][:w1*w2]
-		for j := 0; j < n[1]; j++ {
-			row := c[(i*n[1]+j)*n[2]:][:n[2]]
-			to := plane[(j+more[1])*w2:][:w2]
-			copy(to[more[2]:], row)
-			if more[2] > 0 {
-				sum := 0.0
-				for k, z := range zero[2][:n[2]] {
-					sum += z * row[k]
-				}
-				to[0] = sum
-			}
-		}
-		if more[1] > 0 {
-			clear(plane[:w2])
-			addColumns(plane[:w2], plane[w2:], w2, zero[1][:n[1]])
-		}
-	}
-	if more[0] > 0 {
-		clear(out[:w1*w2])
-		addColumns(out[:w1*w2], out[w1*w2:], w1*w2, zero[0][:n[0]])
-	}
+	byAxes(&m.body, [3]int{m.axes[0].n, m.axes[1].n, m.axes[2].n}, c, m.x, m.y, out)
 }
 
 func (m *spaceMesh) shot(f *marched, c []float64) snapshot {
 	if m.axes[0].poly == nil {
 		return &marchedShot{f, c}
 	}
-	return &smoothShot{marchedShot{f, c}, m}
+	return newSmoothShot(m, f, c)
 }
 
 // slice gives the coefficients of the polynomials along an axis through a place from the temperatures of the nodes.
@@ -603,17 +618,17 @@ func (m *spaceMesh) slice(c []float64, axis int, x coord, out []float64) {
 	m.axes[axis].poly.coefficients(line[:n[axis]], out)
 }
 
-// placeWeights gives the weights of the nodes in the temperature of a place.
-func (m *spaceMesh) placeWeights(x coord) []float64 {
+// placeWeights appends the weights of the nodes in the temperature of a place.
+func (m *spaceMesh) placeWeights(x coord, out []float64) []float64 {
 	var v [3][maxDegrees]float64
 	for a, ax := range m.axes {
 		ax.valueAt(x[a], v[a][:ax.n])
 	}
-	out := make([]float64, 0, m.n)
 	for _, p := range v[0][:m.axes[0].n] {
 		for _, q := range v[1][:m.axes[1].n] {
+			q *= p
 			for _, r := range v[2][:m.axes[2].n] {
-				out = append(out, p*q*r)
+				out = append(out, q*r)
 			}
 		}
 	}

@@ -11,6 +11,7 @@ type marched struct {
 	laws  []*law    // by node, where fronts are followed; nil where the field is smooth
 	now   []float64 // temperatures of the nodes at the instant that was asked for last
 	shot  snapshot  // of them
+	seen  followed
 	// bounds are what no place can pass, by span, °C: the start and what the surfaces so far are in balance with.
 	bounds [][2]float64
 }
@@ -35,9 +36,11 @@ type mesh interface {
 
 func (f *marched) course(x coord, times, out []float64) {
 	if m, ok := f.mesh.(weighted); ok && f.track.laws == nil {
-		w := m.placeWeights(x)
+		if f.seen.w == nil || f.seen.x != x {
+			f.seen = followed{x: x, w: m.placeWeights(x, f.seen.w[:0]), i: none}
+		}
 		for i, t := range times {
-			out[i] = f.track.sum(f.track.find(t), w)
+			out[i] = f.seen.at(f.track, f.track.find(t))
 		}
 		return
 	}
@@ -54,11 +57,45 @@ func (f *marched) course(x coord, times, out []float64) {
 	}
 }
 
-// weighted is a mesh in which the temperature of a place is a sum over the nodes.
-type weighted interface{ placeWeights(x coord) []float64 }
+// weighted is a mesh in which the temperature of a place is a sum over the nodes, and appends the weights of that sum.
+type weighted interface {
+	placeWeights(x coord, out []float64) []float64
+}
+
+// followed is the place that was asked for last, with the temperatures and slopes at both ends of the interval of the track that was asked
+// for last there: times that follow one another mostly lie in the same or the next.
+type followed struct {
+	x      coord
+	w      []float64
+	i      int // the interval, none at first
+	cuts   int // of the track at that time
+	c0, s0 float64
+	c1, s1 float64
+}
+
+// none is no interval, nor one before the first.
+const none = -2
+
+func (p *followed) at(k *track, b between) float64 {
+	if b.i != p.i || k.cuts != p.cuts {
+		if b.i == p.i+1 && k.cuts == p.cuts {
+			p.c0, p.s0 = p.c1, p.s1
+		} else {
+			p.c0, p.s0 = k.sums(b.i, p.w)
+		}
+		p.c1, p.s1 = k.sums(b.i+1, p.w)
+		p.i, p.cuts = b.i, k.cuts
+	}
+	return b.c0*p.c0 + b.s0*p.s0 + b.c1*p.c1 + b.s1*p.s1
+}
 
 func (f *marched) at(t float64) snapshot {
-	f.track.all(f.track.find(t), f.now)
+	b := f.track.find(t)
+	if s, ok := f.shot.(*smoothShot); ok && f.track.laws == nil {
+		s.b, s.full = b, false
+		return s
+	}
+	f.track.all(b, f.now)
 	return f.shot
 }
 
@@ -78,13 +115,67 @@ func (s *marchedShot) mean() float64 {
 	return sum
 }
 
-// smoothShot is one with polynomials through its nodes.
+// smoothShot is one with polynomials through its nodes. Where a track keeps temperatures, what it kept at both ends of an interval is brought
+// to the nodes of the body once for all instants between.
 type smoothShot struct {
 	marchedShot
 	mesh *spaceMesh
+	b    between
+	full bool // c is filled
+	i    int  // the interval that ends belongs to
+	cuts int  // of the track at that time
+	ends [4][]float64
+	all  followed // the volume mean
+}
+
+func newSmoothShot(m *spaceMesh, f *marched, c []float64) *smoothShot {
+	s := &smoothShot{marchedShot: marchedShot{f, c}, mesh: m, i: none}
+	s.all = followed{w: m.w, i: none}
+	n := 1
+	for a, ax := range m.axes {
+		n *= len(m.body[a]) / ax.n
+	}
+	for k := range s.ends {
+		s.ends[k] = make([]float64, n)
+	}
+	return s
+}
+
+func (s *smoothShot) grid(out []float64) {
+	k := s.f.track
+	if k.laws != nil {
+		s.marchedShot.grid(out)
+		return
+	}
+	if i := s.b.i; i != s.i || k.cuts != s.cuts {
+		e := &s.ends
+		if i == s.i+1 && k.cuts == s.cuts {
+			e[0], e[1], e[2], e[3] = e[2], e[3], e[0], e[1]
+		} else {
+			c, slope := k.row(i)
+			s.mesh.fill(c, e[0])
+			s.mesh.fill(slope, e[1])
+		}
+		c, slope := k.row(i + 1)
+		s.mesh.fill(c, e[2])
+		s.mesh.fill(slope, e[3])
+		s.i, s.cuts = i, k.cuts
+	}
+	s.b.mix(s.ends[0], s.ends[1], s.ends[2], s.ends[3], out)
+}
+
+func (s *smoothShot) mean() float64 {
+	if s.f.track.laws != nil {
+		return s.marchedShot.mean()
+	}
+	return s.all.at(s.f.track, s.b)
 }
 
 func (s *smoothShot) slice(axis int, x coord, _ [3]int, out []float64) {
+	if s.f.track.laws == nil && !s.full {
+		s.f.track.all(s.b, s.c)
+		s.full = true
+	}
 	s.mesh.slice(s.c, axis, x, out)
 }
 

@@ -389,7 +389,7 @@ func TestStatedErrorIsHonestWithUnlikeFaces(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			fine := &solver{product: &p, steps: steps, options: Options{ConductivityFactor: 1}, tmp: &scratch{slab{wide: 1}, slab{wide: 1}}}
+			fine := &solver{product: &p, steps: steps, options: Options{ConductivityFactor: 1}, tmp: &scratch{field: slab{wide: 1}, call: slab{wide: 1}}}
 			fine.layOut()
 			more := 0
 			for fine.degrees(0, more) < maxDegrees-2 {

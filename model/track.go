@@ -3,6 +3,8 @@ package model
 import (
 	"math"
 	"sort"
+
+	"gonum.org/v1/gonum/blas/blas64"
 )
 
 // track keeps n nodes at rising instants, with their slopes in time: cubics through both stand between. A change of surroundings stands
@@ -15,6 +17,7 @@ type track struct {
 	laws  []*law    // by node, of heat contents; nil: temperatures are kept
 	ice   *law      // of all nodes: Kirchhoff integrals are kept
 	last  int       // the interval that was looked at last
+	cuts  int       // how often instants were taken back
 }
 
 // usualInstants is how many instants a march mostly takes.
@@ -24,16 +27,21 @@ const usualInstants = 250
 func (k *track) add(t float64) (c, slope []float64) {
 	k.times = append(k.times, t)
 	at := len(k.data)
-	if at == 0 {
+	if cap(k.data) == 0 {
 		k.data = make([]float64, 0, usualInstants*2*k.n)
 	}
-	k.data = append(k.data, make([]float64, 2*k.n)...)
+	if at+2*k.n <= cap(k.data) {
+		k.data = k.data[:at+2*k.n] // the caller fills it
+	} else {
+		k.data = append(k.data, make([]float64, 2*k.n)...)
+	}
 	return k.data[at : at+k.n], k.data[at+k.n : at+2*k.n]
 }
 
 // cut takes back everything after the first m instants.
 func (k *track) cut(m int) {
 	k.times, k.data, k.last = k.times[:m], k.data[:2*k.n*m], 0
+	k.cuts++
 }
 
 // row gives what was kept of instant i.
@@ -41,6 +49,9 @@ func (k *track) row(i int) (c, slope []float64) {
 	at := 2 * k.n * i
 	return k.data[at : at+k.n], k.data[at+k.n : at+2*k.n]
 }
+
+// whole gives all that was kept of instant i: what stands at the nodes, then the slopes.
+func (k *track) whole(i int) []float64 { return k.data[2*k.n*i : 2*k.n*(i+1)] }
 
 // between holds the weights of the two instants around one.
 type between struct {
@@ -70,22 +81,26 @@ func cubicAt(i int, x, d float64) between {
 	return between{i, 1 + y*(2*x-3), d * x * (1 + x*(x-2)), y * (3 - 2*x), d * y * (x - 1)}
 }
 
-// raw fills out with what is kept of all nodes.
-func (k *track) raw(b between, out []float64) {
-	a := k.data[2*k.n*b.i : 2*k.n*(b.i+2)]
-	n := k.n
-	c0, s0, c1, s1 := a[:n], a[n:2*n], a[2*n:3*n], a[3*n:4*n]
-	for j := range out[:n] {
+// mix fills out with what stands between temperatures and slopes at both ends.
+func (b *between) mix(c0, s0, c1, s1, out []float64) {
+	c0, s0, c1, s1 = c0[:len(out)], s0[:len(out)], c1[:len(out)], s1[:len(out)]
+	for j := range out {
 		out[j] = b.c0*c0[j] + b.s0*s0[j] + b.c1*c1[j] + b.s1*s1[j]
 	}
 }
 
+// raw fills out with what is kept of all nodes.
+func (k *track) raw(b between, out []float64) {
+	a := k.data[2*k.n*b.i : 2*k.n*(b.i+2)]
+	n := k.n
+	b.mix(a[:n], a[n:2*n], a[2*n:3*n], a[3*n:4*n], out[:n])
+}
+
 // all fills out with the temperatures of all nodes.
 func (k *track) all(b between, out []float64) {
-	n := k.n
 	k.raw(b, out)
 	if k.ice != nil {
-		for j, u := range out[:n] {
+		for j, u := range out[:k.n] {
 			out[j], _ = k.ice.byU.temperature(u)
 		}
 		return
@@ -112,27 +127,39 @@ func (k *track) kept(i, j int) float64 {
 func (k *track) reach(from, to float64) (low, high float64) {
 	low, high = math.Inf(1), math.Inf(-1)
 	for i, t := range k.times {
-		if t >= from && t <= to {
+		if t < from || t > to {
+			continue
+		}
+		if k.laws != nil {
 			for j := range k.n {
 				c := k.kept(i, j)
 				low, high = min(low, c), max(high, c)
 			}
+			continue
+		}
+		c, _ := k.row(i)
+		least, most := spanOf(c)
+		low, high = min(low, least), max(high, most)
+	}
+	return low, high
+}
+
+// spanOf gives the least and the largest of some numbers.
+func spanOf(c []float64) (low, high float64) {
+	low, high = c[0], c[0]
+	for _, c := range c {
+		if c < low {
+			low = c
+		} else if c > high {
+			high = c
 		}
 	}
 	return low, high
 }
 
-// sum gives the sum of the temperatures of all nodes by weight.
-func (k *track) sum(b between, w []float64) float64 {
-	a := k.data[2*k.n*b.i : 2*k.n*(b.i+2)]
-	n := len(w)
-	c0, s0, c1, s1 := a[:n], a[k.n:][:n], a[2*k.n:][:n], a[3*k.n:][:n]
-	var x, y, z, v float64
-	for j, w := range w {
-		x += w * c0[j]
-		y += w * s0[j]
-		z += w * c1[j]
-		v += w * s1[j]
-	}
-	return b.c0*x + b.s0*y + b.c1*z + b.s1*v
+// sums gives the sums of the temperatures of all nodes by weight at instant i, and of their slopes in time.
+func (k *track) sums(i int, w []float64) (c, slope float64) {
+	all, slopes := k.row(i)
+	v := blas64.Vector{N: k.n, Inc: 1, Data: w}
+	return blas64.Dot(v, blas64.Vector{N: k.n, Inc: 1, Data: all}), blas64.Dot(v, blas64.Vector{N: k.n, Inc: 1, Data: slopes})
 }
