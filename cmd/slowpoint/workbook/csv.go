@@ -22,6 +22,7 @@ const (
 	mostFile    = 64 << 20  // of a workbook file
 	mostBytes   = 256 << 20 // of a plan, unzipped
 	mostCells   = 3_000_000 // of a plan
+	mostMerged  = 20_000    // ranges of merged cells of a sheet
 	mostText    = 32_767    // characters of a cell, as in spreadsheets
 )
 

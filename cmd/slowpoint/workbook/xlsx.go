@@ -46,7 +46,7 @@ func readWorkbook(data []byte) ([]*Grid, error) {
 	if err != nil {
 		return nil, err
 	}
-	m := &meter{left: mostBytes}
+	m := &meter{left: mostBytes, spare: mostElements}
 	byName := map[string]*zip.File{}
 	for _, f := range z.File {
 		byName[strings.ToLower(f.Name)] = f
@@ -63,7 +63,9 @@ func readWorkbook(data []byte) ([]*Grid, error) {
 			return nil, damaged(s.part, fmt.Errorf("it is missing, and the sheet %s is in it", s.name))
 		}
 		g := &Grid{Name: tidy(s.name), Hidden: s.hidden, HiddenCols: map[int]bool{}, words: b.words, Is1904: b.is1904}
-		if err := m.part(f, func(r io.Reader) error { return b.sheet(r, g, &cells) }); err != nil {
+		if err := m.part(f, func(r metered) error { return b.sheet(r, g, &cells) }); err == errMerged {
+			return nil, fmt.Errorf("the sheet %s %w", g.Name, err)
+		} else if err != nil {
 			return nil, err
 		}
 		done[f] = true
@@ -74,7 +76,7 @@ func readWorkbook(data []byte) ([]*Grid, error) {
 			continue
 		}
 		n := strings.ToLower(f.Name)
-		var use func(io.Reader) error
+		var use func(metered) error
 		if strings.HasSuffix(n, ".xml") && (strings.HasPrefix(n, "xl/worksheets/") || n == "[content_types].xml") || strings.HasSuffix(n, ".rels") {
 			use = wellFormed
 		}
@@ -101,8 +103,8 @@ func readBook(byName map[string]*zip.File, m *meter) (*book, map[*zip.File]bool,
 	parts := linksOf(home, byName, m)
 	type raw struct{ name, id, state string }
 	var sheets []raw
-	err := m.part(f, func(r io.Reader) error {
-		return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
+	err := m.part(f, func(r metered) error {
+		return elements(r, func(_ *walker, e xml.StartElement) error {
 			switch e.Name.Local {
 			case "workbookPr":
 				v := attr(e, "date1904")
@@ -137,7 +139,7 @@ func readBook(byName map[string]*zip.File, m *meter) (*book, map[*zip.File]bool,
 func (b *book) readShared(parts map[string]link, byName map[string]*zip.File, m *meter, done map[*zip.File]bool) error {
 	for _, l := range parts {
 		f := byName[strings.ToLower(l.part)]
-		var use func(io.Reader) error
+		var use func(metered) error
 		switch {
 		case strings.HasSuffix(l.kind, "/sharedStrings"):
 			use = b.readStrings
@@ -167,8 +169,8 @@ func linksOf(part string, byName map[string]*zip.File, m *meter) map[string]link
 	if f == nil {
 		return out
 	}
-	m.part(f, func(r io.Reader) error {
-		return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
+	m.part(f, func(r metered) error {
+		return elements(r, func(_ *walker, e xml.StartElement) error {
 			if e.Name.Local == "Relationship" {
 				out[attr(e, "Id")] = link{attr(e, "Type"), target(part, attr(e, "Target"))}
 			}
@@ -198,12 +200,19 @@ func attr(e xml.StartElement, name string) string {
 	return ""
 }
 
+// What a cell, with its formula, value and text, and a shared text in two or three writings hold; more comes out of what is spare.
+const (
+	inCell = 4
+	inText = 20
+)
+
 // readStrings reads the shared texts; runs of one text are joined, its reading aids (rPh) left out.
-func (b *book) readStrings(r io.Reader) error {
-	return elements(r, func(d *xml.Decoder, e xml.StartElement) error {
+func (b *book) readStrings(r metered) error {
+	return elements(r, func(d *walker, e xml.StartElement) error {
 		if e.Name.Local != "si" {
 			return nil
 		}
+		d.m.spare += inText
 		s, struck, err := richText(d)
 		if err != nil {
 			return err
@@ -211,7 +220,9 @@ func (b *book) readStrings(r io.Reader) error {
 		if struck {
 			b.struck.texts = marked(b.struck.texts, len(b.strings))
 		}
-		b.strings = append(b.strings, tidy(s))
+		if b.strings = append(b.strings, tidy(s)); len(b.strings) > mostCells {
+			return errTooMany
+		}
 		return nil
 	}, nil)
 }
@@ -235,7 +246,7 @@ func strikes(e xml.StartElement) bool {
 }
 
 // richText reads up to the end of the element that was just opened, joins its texts, and tells whether one of them is struck through.
-func richText(d *xml.Decoder) (joined string, struck bool, err error) {
+func richText(d *walker) (joined string, struck bool, err error) {
 	var s strings.Builder
 	lined := false // the run that is read
 	for depth, inT := 1, false; depth > 0; {
@@ -294,12 +305,12 @@ func unescape(s string) string {
 }
 
 // readStyles finds what the number format of each cell style makes of a number, and which styles strike through.
-func (b *book) readStyles(r io.Reader) error {
+func (b *book) readStyles(r metered) error {
 	custom := map[string]Form{}
 	var lined map[int]bool // fonts that strike through
 	fonts := 0             // begun so far
 	inFonts, inCells := false, false
-	return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
+	return elements(r, func(_ *walker, e xml.StartElement) error {
 		switch e.Name.Local {
 		case "numFmt":
 			custom[attr(e, "numFmtId")] = b.form(attr(e, "formatCode"))
@@ -442,8 +453,8 @@ func formOf(code string) Form {
 	return Bare
 }
 
-// sheet reads the cells of one sheet. left is how many cells the plan may still have.
-func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
+// sheet reads the cells of one sheet. left is how many cells and empty rows the plan may still have.
+func (b *book) sheet(r metered, g *Grid, left *int) error {
 	row := Row{}
 	col, filled := 0, 0
 	flush := func() {
@@ -453,13 +464,19 @@ func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
 		row = Row{N: row.N}
 	}
 	rooted := false
-	err := elements(r, func(d *xml.Decoder, e xml.StartElement) error {
+	err := elements(r, func(d *walker, e xml.StartElement) error {
 		if !rooted && e.Name.Local != "worksheet" {
 			return errors.New("it is not a sheet")
 		}
 		rooted = true
 		switch e.Name.Local {
 		case "row":
+			if row.N > 0 && col == 0 { // an empty row takes as long as a cell
+				if *left--; *left < 0 {
+					return errTooMany
+				}
+			}
+			d.m.spare++
 			flush()
 			next, err := startRow(e, row.N)
 			if err != nil {
@@ -478,6 +495,7 @@ func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
 			if *left--; *left < 0 {
 				return errTooMany
 			}
+			d.m.spare += inCell
 			c, err := b.cell(d, e)
 			if err != nil {
 				return err
@@ -499,6 +517,9 @@ func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
 			v := attr(e, "sheet")
 			g.Protected = v == "1" || v == "true"
 		case "mergeCell":
+			if len(g.Merged) == mostMerged {
+				return errMerged
+			}
 			if m, ok := parseBlock(attr(e, "ref")); ok {
 				g.Merged = append(g.Merged, m)
 			}
@@ -587,7 +608,7 @@ type stored struct {
 }
 
 // cell reads one cell up to its end.
-func (b *book) cell(d *xml.Decoder, e xml.StartElement) (Entry, error) {
+func (b *book) cell(d *walker, e xml.StartElement) (Entry, error) {
 	in := stored{kind: attr(e, "t")}
 	for depth := 1; depth > 0; {
 		t, err := d.Token()
@@ -689,8 +710,8 @@ func otherBook(formula string) bool {
 }
 
 // charData reads the text of an element up to its end.
-func charData(d *xml.Decoder) (string, error) {
-	s := ""
+func charData(d *walker) (string, error) {
+	var s strings.Builder
 	for {
 		t, err := d.Token()
 		if err != nil {
@@ -698,13 +719,13 @@ func charData(d *xml.Decoder) (string, error) {
 		}
 		switch t := t.(type) {
 		case xml.CharData:
-			s += string(t)
+			s.Write(t)
 		case xml.StartElement:
 			if err := d.Skip(); err != nil {
 				return "", midway(err)
 			}
 		case xml.EndElement:
-			return s, nil
+			return s.String(), nil
 		}
 	}
 }
