@@ -79,6 +79,7 @@ var (
 
 	// Plan
 	unknownItem = saying{"is not an item of a plan{1}", "items are: {2}"}
+	ignoresOurs = saying{"is a column of slowpoint's own, in {1}, and cannot be ignored", "rename your column, or start its heading with #"}
 	noProducts  = saying{"The plan has no product", "fill the sheet Products"}
 
 	// products, foods

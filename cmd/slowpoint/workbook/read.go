@@ -337,7 +337,7 @@ const altitude = "Altitude (m)"
 
 // ofAll refuses all products for the faults of an item that all of them are calculated or read with.
 func (r *reader) ofAll(l *Line, item string) {
-	if item == altitude || item == "Decimal sign" {
+	if item == altitude || item == "Decimal sign" || item == "Ignore columns" {
 		r.unread["Plan"] = append(r.unread["Plan"], l.because...)
 	}
 }
@@ -376,9 +376,24 @@ func (r *reader) planItem(l *Line, known, item, value string) {
 		choice()
 	case "Ignore columns":
 		for _, c := range strings.FieldsFunc(value, func(c rune) bool { return c == ',' || c == ';' }) {
+			if of := r.sheetsWith(c); len(of) > 0 {
+				l.Fault("Value", tidy(c), ignoresOurs, and(of))
+				continue
+			}
 			r.ignore[Key(c)] = true
 		}
 	}
+}
+
+// sheetsWith names the sheets that have a column of a heading, written with or without a unit.
+func (r *reader) sheetsWith(heading string) (of []string) {
+	name, _ := SplitHeading(heading)
+	for _, s := range r.list {
+		if s.known(Key(name)) != nil {
+			of = append(of, s.Name)
+		}
+	}
+	return of
 }
 
 // decimalSign looks at every text of a column of numbers for a decimal sign beyond doubt, unless the sheet Plan says it.
