@@ -67,6 +67,13 @@ var (
 	isDate         = saying{"is formatted as a date", "type {1}, and give the cell a number format"}
 	isTime         = saying{"is formatted as a time", "type {1}, and give the cell a number format"}
 	isWorded       = saying{"is shown with the unit {1} by its number format, but the heading says {2}", "let both say the same unit"}
+	shownNothing   = saying{"is stored, but the cell shows nothing of it, by its number format", "look whether the number counts, and give the cell a number format that shows it"}
+	shownWords     = saying{"is stored, but the cell shows words in its place, by its number format", "look whether the number counts, and give the cell a number format that shows it"}
+	shownThousands = saying{"is stored, but the cell shows it divided by a thousand, by the comma that ends its number format", "look which number counts, and give the cell a number format without that comma"}
+	shownOther     = saying{"is stored, but the cell shows another number, by its number format", "look which number counts, and give the cell the number format General"}
+	shownTimeOfDay = saying{"is shown as a time of day by its number format", "for a duration give the cell the number format [h]:mm, or type a number with its unit, as 2 h"}
+	shownOver      = saying{"is stored, but the cell shows only what is over after whole {1}, by its number format", "look which time counts, and give the cell the number format {2}, or type a number with its unit, as 90 min"}
+	raisedDigits   = saying{"holds raised or lowered digits, of a footnote perhaps, which would be read with the number", "type the number alone, and the footnote into another column"}
 	isPercent      = saying{"is formatted as a percentage", "type {1}, and give the cell a number format"}
 	isTruth        = saying{"is a logical value", "type {1}"}
 	decimalMixed   = saying{"shows a decimal {1}, but {2} shows a decimal {3}", "use one decimal sign throughout, or fill the item Decimal sign of the sheet Plan"}

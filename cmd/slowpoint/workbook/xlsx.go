@@ -12,6 +12,7 @@ import (
 	"strconv"
 	"strings"
 	"time"
+	"unicode"
 
 	"slowpoint/model/cell"
 )
@@ -24,7 +25,8 @@ type book struct {
 	sheets  []bookSheet
 	is1904  bool
 	strings []string
-	forms   []Form   // of each cell style
+	formats []numberFormat // of each cell style; nil where every number has the form in forms and is shown as it is stored
+	forms   []Form
 	words   []string // of forms from worded on
 	struck  struck
 }
@@ -306,14 +308,14 @@ func unescape(s string) string {
 
 // readStyles finds what the number format of each cell style makes of a number, and which styles strike through.
 func (b *book) readStyles(r metered) error {
-	custom := map[string]Form{}
+	custom := map[string]numberFormat{}
 	var lined map[int]bool // fonts that strike through
 	fonts := 0             // begun so far
 	inFonts, inCells := false, false
 	return elements(r, func(_ *walker, e xml.StartElement) error {
 		switch e.Name.Local {
 		case "numFmt":
-			custom[attr(e, "numFmtId")] = b.form(attr(e, "formatCode"))
+			custom[attr(e, "numFmtId")] = b.numberFormat(attr(e, "formatCode"))
 		case "fonts":
 			inFonts = true
 		case "font":
@@ -331,10 +333,16 @@ func (b *book) readStyles(r metered) error {
 				}
 				id := attr(e, "numFmtId")
 				f, ok := custom[id]
-				if !ok {
-					f = builtIn(id)
+				if code := clocks[id]; !ok && code != "" {
+					f = b.numberFormat(code)
+				} else if !ok {
+					f = numberFormat{{form: builtIn(id)}}
 				}
-				b.forms = append(b.forms, f)
+				b.forms = append(b.forms, f[0].form)
+				if f.plain() {
+					f = nil
+				}
+				b.formats = append(b.formats, f)
 			}
 		}
 		return nil
@@ -354,19 +362,21 @@ func builtIn(id string) Form {
 	switch {
 	case n == 9 || n == 10:
 		return Percent
-	case n >= 18 && n <= 21 || n >= 45 && n <= 47:
-		return Clock
 	case n >= 14 && n <= 17 || n == 22 || n >= 27 && n <= 36 || n >= 50 && n <= 58:
 		return Date
 	}
 	return Bare
 }
 
+// clocks are the built-in number formats of times (ECMA-376 part 1, 18.8.30).
+var clocks = map[string]string{"18": "h:mm AM/PM", "19": "h:mm:ss AM/PM", "20": "h:mm", "21": "h:mm:ss", "45": "mm:ss", "46": "[h]:mm:ss", "47": "mm:ss.0"}
+
 // form is formOf, but tells bare formats apart that show words behind the number.
 func (b *book) form(code string) Form {
 	f := formOf(code)
 	words := behind(code)
-	if f != Bare || words == "" || len(b.words) >= 200 {
+	named := strings.ContainsFunc(words, func(c rune) bool { return unicode.IsLetter(c) || strings.ContainsRune("°%\"″", c) }) // and no bracket or stop
+	if f != Bare || !named || len(b.words) >= 200 {
 		return f
 	}
 	for i, w := range b.words {
@@ -680,6 +690,11 @@ func (b *book) meaning(in stored, style string) (Entry, error) {
 		c.Kind, c.Text = Figure, strings.TrimSpace(in.value)
 		if n, err := strconv.Atoi(style); err == nil && n >= 0 && n < len(b.forms) {
 			c.Form = b.forms[n]
+			if f := b.formats[n]; f != nil {
+				if x, err := storedNumber(c.Text); err == nil {
+					c.Form, c.Shows = f.of(x)
+				}
+			}
 		}
 	}
 	switch {
@@ -732,7 +747,7 @@ func charData(d *walker) (string, error) {
 
 // isoDate prints a stored date: days from the end of 1899 (with the 29 February 1900 that never was) or from 1904.
 func isoDate(stored string, is1904 bool) string {
-	x, err := strconv.ParseFloat(stored, 64)
+	x, err := storedNumber(stored)
 	if err != nil || math.IsNaN(x) || x < 0 || x > 2958466 {
 		return stored
 	}
