@@ -174,8 +174,11 @@ func (c *Column) slipped(v unit.Value) string {
 	return ""
 }
 
-// storedNumber reads a number as workbooks store it.
+// storedNumber reads a number as workbooks store it: decimal, with a point. ParseFloat alone takes 2_0 for 20 and 0x1p4 for 16.
 func storedNumber(stored string) (float64, error) {
+	if strings.ContainsAny(stored, "_xXpP") {
+		return 0, strconv.ErrSyntax
+	}
 	return strconv.ParseFloat(stored, 64)
 }
 
