@@ -355,6 +355,10 @@ func (r *reader) planItem(l *Line, known, item, value string) {
 	}
 	switch known {
 	case altitude:
+		if no := l.Entry("Value").differs(value); no != nil {
+			l.refuse("Value", no)
+			return
+		}
 		_, inside := SplitHeading(item)
 		v, m := unit.Length.Parse(value, unit.Length.Unit(inside), unit.Point)
 		if m != nil || v.Computed < -500 || v.Computed > 6000 {

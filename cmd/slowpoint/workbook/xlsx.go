@@ -13,6 +13,7 @@ import (
 	"strings"
 	"time"
 	"unicode"
+	"unicode/utf8"
 
 	"slowpoint/model/cell"
 )
@@ -29,6 +30,7 @@ type book struct {
 	forms   []Form
 	words   []string // of forms from worded on
 	struck  struck
+	raised  map[int]bool // shared texts with raised or lowered digits that are no unit's; nil if there are none
 }
 
 // struck is what is struck through; both are nil in a plan without such a thing.
@@ -215,14 +217,17 @@ func (b *book) readStrings(r metered) error {
 			return nil
 		}
 		d.m.spare += inText
-		s, struck, err := richText(d)
+		t, err := richText(d)
 		if err != nil {
 			return err
 		}
-		if struck {
+		if t.struck {
 			b.struck.texts = marked(b.struck.texts, len(b.strings))
 		}
-		if b.strings = append(b.strings, tidy(s)); len(b.strings) > mostCells {
+		if t.raised {
+			b.raised = marked(b.raised, len(b.strings))
+		}
+		if b.strings = append(b.strings, tidy(t.joined)); len(b.strings) > mostCells {
 			return errTooMany
 		}
 		return nil
@@ -247,25 +252,40 @@ func strikes(e xml.StartElement) bool {
 	return v != "0" && v != "false"
 }
 
-// richText reads up to the end of the element that was just opened, joins its texts, and tells whether one of them is struck through.
-func richText(d *walker) (joined string, struck bool, err error) {
+// raises tells whether an element of a font raises or lowers its text.
+func raises(e xml.StartElement) bool {
+	v := attr(e, "val")
+	return e.Name.Local == "vertAlign" && v != "" && v != "baseline"
+}
+
+// rich is the runs of a text, joined.
+type rich struct {
+	joined string
+	struck bool // one of them is struck through
+	raised bool // one of them holds raised or lowered digits that do not belong to a letter before them, as the 2 of m² does
+}
+
+// richText reads up to the end of the element that was just opened.
+func richText(d *walker) (r rich, err error) {
 	var s strings.Builder
-	lined := false // the run that is read
+	lined, up := false, false // the run that is read
+	before := ' '             // the letter or sign before it
 	for depth, inT := 1, false; depth > 0; {
 		t, err := d.Token()
 		if err != nil {
-			return "", false, midway(err)
+			return rich{}, midway(err)
 		}
 		switch t := t.(type) {
 		case xml.StartElement:
 			if t.Name.Local == "rPh" {
 				if err := d.Skip(); err != nil {
-					return "", false, midway(err)
+					return rich{}, midway(err)
 				}
 				continue
 			}
 			depth++
 			lined = (lined || strikes(t)) && t.Name.Local != "r"
+			up = (up || raises(t)) && t.Name.Local != "r"
 			inT = t.Name.Local == "t"
 		case xml.EndElement:
 			depth--
@@ -273,11 +293,16 @@ func richText(d *walker) (joined string, struck bool, err error) {
 		case xml.CharData:
 			if inT {
 				s.Write(t)
-				struck = struck || lined && len(bytes.TrimSpace(t)) > 0
+				r.struck = r.struck || lined && len(bytes.TrimSpace(t)) > 0
+				r.raised = r.raised || up && bytes.ContainsAny(t, "0123456789") && !unicode.IsLetter(before)
+				if len(t) > 0 {
+					before, _ = utf8.DecodeLastRune(t)
+				}
 			}
 		}
 	}
-	return unescape(s.String()), struck, nil
+	r.joined = unescape(s.String())
+	return r, nil
 }
 
 func midway(err error) error {
@@ -614,7 +639,7 @@ func parseBlock(ref string) (Block, bool) {
 type stored struct {
 	kind, value, inline   string
 	formula, hasV, struck bool
-	linked                bool
+	linked, raised        bool
 }
 
 // cell reads one cell up to its end.
@@ -633,7 +658,9 @@ func (b *book) cell(d *walker, e xml.StartElement) (Entry, error) {
 				f, err = charData(d)
 				in.formula, in.linked = true, otherBook(f)
 			case "is":
-				in.inline, in.struck, err = richText(d)
+				var t rich
+				t, err = richText(d)
+				in.inline, in.struck, in.raised = t.joined, t.struck, t.raised
 			case "v":
 				in.value, err = charData(d)
 				in.hasV = true
@@ -672,6 +699,7 @@ func (b *book) meaning(in stored, style string) (Entry, error) {
 		}
 		c.Kind, c.Text = Text, b.strings[n]
 		c.Struck = c.Struck || b.struck.texts[n]
+		in.raised = b.raised[n]
 	case in.kind == "inlineStr":
 		c.Kind, c.Text = Text, tidy(in.inline)
 	case in.formula && (!in.hasV || in.value == "" && in.kind != "str"): // of text, <v></v> is the stored result "", a missing <v> is none
@@ -702,6 +730,8 @@ func (b *book) meaning(in stored, style string) (Entry, error) {
 		return Entry{}, nil
 	case c.Kind == Text && failed(c.Text):
 		c.Kind = Broken
+	case c.Kind == Text && in.raised:
+		c.Shows = Raised
 	}
 	return c, nil
 }
