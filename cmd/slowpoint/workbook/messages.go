@@ -32,6 +32,7 @@ var (
 	hiddenColumn  = saying{"Column {1} is hidden, and its values are used", "unhide it so that everybody sees what is calculated"}
 	tooManyRows   = saying{"The sheet has more than {1} rows", "divide the plan into several"}
 	csvUnreadable = saying{"The file cannot be read as CSV: {1}", "{2}"}
+	swallowed     = saying{"a cell in quotation marks goes from line {1} to line {2} and holds a {3}, so two rows may have become one", "take out the stray quotation marks, or the line break of the cell"}
 	notUTF8       = saying{"The file is not in UTF-8 ({1})", "save it as CSV UTF-8"}
 
 	// sheets that the import makes
