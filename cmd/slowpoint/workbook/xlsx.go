@@ -112,7 +112,7 @@ func readBook(byName map[string]*zip.File, m *meter) (*book, map[*zip.File]bool,
 			switch e.Name.Local {
 			case "workbookPr":
 				v := attr(e, "date1904")
-				b.is1904 = v == "1" || v == "true"
+				b.is1904 = isTrue(v)
 			case "sheet":
 				sheets = append(sheets, raw{attr(e, "name"), attr(e, "id"), attr(e, "state")})
 			}
@@ -549,8 +549,7 @@ func (b *book) sheet(r metered, g *Grid, left *int) error {
 				row.Cells = append(row.Cells, c)
 			}
 		case "sheetProtection":
-			v := attr(e, "sheet")
-			g.Protected = v == "1" || v == "true"
+			g.Protected = isTrue(attr(e, "sheet"))
 		case "mergeCell":
 			if len(g.Merged) == mostMerged {
 				return errMerged
@@ -559,7 +558,7 @@ func (b *book) sheet(r metered, g *Grid, left *int) error {
 				g.Merged = append(g.Merged, m)
 			}
 		case "col":
-			if h := attr(e, "hidden"); h == "1" || h == "true" {
+			if isTrue(attr(e, "hidden")) || smaller(attr(e, "width"), leastWidth) {
 				from, _ := strconv.Atoi(attr(e, "min"))
 				to, _ := strconv.Atoi(attr(e, "max"))
 				for i := max(from, 1); i <= min(to, mostColumns); i++ {
@@ -572,6 +571,20 @@ func (b *book) sheet(r metered, g *Grid, left *int) error {
 	flush()
 	return err
 }
+
+// What is lower or narrower is a line at most, and nobody sees what is in it.
+const (
+	leastHeight = 1   // points
+	leastWidth  = 0.2 // characters; a column of one pixel has 0.14 (common practice, no source)
+)
+
+// smaller tells whether a size is given and less than least.
+func smaller(size string, least float64) bool {
+	x, err := storedNumber(size)
+	return err == nil && x < least
+}
+
+func isTrue(v string) bool { return v == "1" || v == "true" }
 
 // startRow reads what a row says of itself, after the row before.
 func startRow(e xml.StartElement, before int) (Row, error) {
@@ -589,10 +602,7 @@ func startRow(e xml.StartElement, before int) (Row, error) {
 	if n > LastRow {
 		return Row{}, fmt.Errorf("row %d does not exist in a spreadsheet", n)
 	}
-	hidden := attr(e, "hidden") == "1" || attr(e, "hidden") == "true"
-	if h, err := strconv.ParseFloat(attr(e, "ht"), 64); err == nil && h == 0 && attr(e, "customHeight") != "" {
-		hidden = true // a row of no height
-	}
+	hidden := isTrue(attr(e, "hidden")) || smaller(attr(e, "ht"), leastHeight)
 	return Row{N: n, Hidden: hidden}, nil
 }
 
@@ -709,7 +719,7 @@ func (b *book) meaning(in stored, style string) (Entry, error) {
 	case in.kind == "str":
 		c.Kind, c.Text = Text, tidy(unescape(in.value))
 	case in.kind == "b":
-		c.Kind, c.Text = Truth, map[bool]string{true: "TRUE", false: "FALSE"}[in.value == "1" || in.value == "true"]
+		c.Kind, c.Text = Truth, map[bool]string{true: "TRUE", false: "FALSE"}[isTrue(in.value)]
 	case in.kind == "e":
 		c.Kind, c.Text = Broken, in.value
 	case in.kind == "d":
