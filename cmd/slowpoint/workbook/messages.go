@@ -127,6 +127,7 @@ var (
 		"type its thickness over its conductivity, 0.00025 m²K/W for 0.05 mm of a plastic of 0.2 W/(m·K), or a film coefficient that includes it; a wrap with air beneath it is no tight one: take loose lid, about 0.04 m²K/W a millimetre of air"}
 	openWithWrap   = saying{"is given, but the cover is open", "clear the cell, or name the cover"}
 	courseUnknown  = saying{"is not a course of the sheet Courses{1}", "correct the name"}
+	courseUnused   = saying{"is a course that no row of Steps or Faces names", "name it in the column Course of Steps, or take its rows out"}
 	courseShort    = saying{"is a course of {1}, shorter than the step of {2}", "add rows to the course up to the end of the step"}
 	courseLong     = saying{"is a course of {1}, longer than the step of {2}; the rest is cut off", ""}
 	courseStart    = saying{"is the first time of the course {1}; a course starts at 0", "add a row at 0, the start of the step"}
@@ -155,6 +156,7 @@ var (
 	stageNowhere   = saying{"is a stage of no step of the products that the limit applies to", "correct the stage, or take the row out"}
 	noPair         = saying{"is a pair of stages, which only delay uses", "join stages by +, as cook + rest"}
 	appliesUnknown = saying{"matches no product and no family{1}", "type all, family: NAME, or the name of a product"}
+	familyNear     = saying{"is a family that no limit names; did you mean {1}, which the limit {2} is for?", "correct the family, or give it limits of its own"}
 	familyUnknown  = saying{"matches no family of the sheet Products{1}", "correct the name of the family"}
 	whereUnknown   = saying{"is not a place{1}", "type every point, surface, centre, medium, or the name of a row of Points"}
 	whereLacking   = saying{"is a point that {1} does not have", "add it to Points for each product that the limit applies to"}

@@ -222,6 +222,7 @@ func (r *reader) read() {
 	r.readLayers()
 	r.readSteps()
 	r.readFaces()
+	r.unusedCourses()
 	r.readPoints()
 	r.notYet()
 	r.chains()
