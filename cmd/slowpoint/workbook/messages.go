@@ -24,6 +24,7 @@ var (
 	doubledColumn = saying{"is there twice, in columns {1} and {2}", "keep one of the two columns"}
 	headingNoUnit = saying{"has no unit; {1} needs one", "put the unit in brackets, as {2}"}
 	headingOther  = saying{"has the unit {1}, which is not a unit of {2}", "units of {2} are {3}"}
+	headingAlike  = saying{"has a unit with the {1}", "type it in Latin letters: {2}"}
 	headingKelvin = saying{"is in kelvin, which is not accepted for a temperature", "use °C or °F"}
 	headingNoDiff = saying{"is headed as a temperature, but it is a temperature difference", "write {1} (°C difference) or {1} (°F difference)"}
 	noHeading     = saying{"stands in a column without a heading", "give column {1} a heading, one that starts with # if it is your own, or clear the cell{2}"}
