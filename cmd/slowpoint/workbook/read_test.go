@@ -504,6 +504,22 @@ func TestLoadedXML(t *testing.T) {
 	}
 }
 
+// TestSlip: which names of families are likely one name misspelt.
+func TestSlip(t *testing.T) {
+	for _, c := range []struct {
+		a, b string
+		want bool
+	}{
+		{"trays", "tray", true}, {"trays", "trais", true}, {"cook chill", "cookchill", true}, {"sausage rolls", "sausag rols", true}, {"ready-meals", "ready meals", true},
+		{"ham", "jam", false}, {"beef", "beets", false}, {"rolls", "tolla", false}, {"soup 2", "soup 1", false}, {"pie 12 cm", "pie 14 cm", false}, {"line a", "line b", false},
+		{"chilled trays", "chilled trout", false},
+	} {
+		if got := slip(c.a, c.b); got != c.want {
+			t.Errorf("%s, %s: %v", c.a, c.b, got)
+		}
+	}
+}
+
 // TestContainers: files of other kinds are told apart by what they hold, not by their names.
 func TestContainers(t *testing.T) {
 	zipped := func(names ...string) []byte {
