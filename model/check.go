@@ -295,7 +295,7 @@ func (c *checker) exposure(st *Step, e *Exposure, before float64) {
 	}
 	for _, need := range e.Surface.Needs {
 		if need == "Film coefficient" && e.FilmW == nil || need == "Air speed" && e.AirMS == nil && e.FilmW == nil || need == "Wrap resistance" && e.WrapM2KW == nil {
-			c.add(e.At, need, "", fmt.Sprintf("%s needs it", e.Surface.Name), e.Surface.Published)
+			c.add(e.At, need, "", fmt.Sprintf("%s is missing: %s needs it", need, e.Surface.Name), e.Surface.Published)
 		}
 	}
 	m := &e.Medium

@@ -137,8 +137,8 @@ func TestCheckRefuses(t *testing.T) {
 		}, "Steps row 2", "Film coefficient", "one of the two"},
 		{"water activity above 1", func(p *Product, _ []Step) { p.Food.WaterActivity = ptr(97.0) }, "Foods row 7", "Water activity", "at most 1"},
 		{"loose lid", func(_ *Product, s []Step) { s[0].Cover = LooseLid }, "Steps row 2", "Wrap resistance", "0.04 m²K/W"},
-		{"no film", func(_ *Product, s []Step) { s[0].FilmW = nil }, "Steps row 2", "Film coefficient", "needs it"},
-		{"no air speed", func(_ *Product, s []Step) { s[1].AirMS = nil }, "Steps row 3", "Air speed", "needs it"},
+		{"no film", func(_ *Product, s []Step) { s[0].FilmW = nil }, "Steps row 2", "Film coefficient", "Film coefficient is missing: film needs it"},
+		{"no air speed", func(_ *Product, s []Step) { s[1].AirMS = nil }, "Steps row 3", "Air speed", "Air speed is missing: moving air needs it"},
 		{"no medium", func(_ *Product, s []Step) { s[1].Medium = Course{} }, "Steps row 3", "Temperature", "needs a temperature"},
 		{"short course", func(_ *Product, s []Step) {
 			s[0].Medium = Course{Name: "oven log", TimesS: []float64{0, 3000}, C: []float64{90, 150}}

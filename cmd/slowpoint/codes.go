@@ -17,7 +17,7 @@ func codesCommand(files *shelf) *cobra.Command {
 	var where, stage string
 	cmd := &cobra.Command{
 		Use: "codes", Short: "List starter limits of published codes, to copy and confirm",
-		Example: "  slowpoint codes --where US --stage cook", Args: cobra.NoArgs,
+		Example: "  slowpoint codes --where US --stage cook", Args: commandsOnly,
 		RunE: func(cmd *cobra.Command, _ []string) error {
 			out := cmd.OutOrStdout()
 			found := codes.Find(where, stage)

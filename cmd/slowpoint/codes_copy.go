@@ -1,6 +1,7 @@
 package main
 
 import (
+	"errors"
 	"fmt"
 	"io"
 	"path/filepath"
@@ -13,9 +14,11 @@ import (
 )
 
 func codesCopyCommand(files *shelf) *cobra.Command {
-	return &cobra.Command{
+	var target string
+	cmd := &cobra.Command{
 		Use: "copy ID… PLAN.xlsx", Short: "Write a new workbook beside the plan, with starter limits added",
-		Example: "  slowpoint codes copy US-FC22-501.14-A1 plan.xlsx", Args: cobra.MinimumNArgs(2),
+		Example: "  slowpoint codes copy US-FC22-501.14-A1 plan.xlsx",
+		Args:    takes(2, many, "name the limits by their IDs, then the plan; slowpoint codes lists the limits"),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			ids, plan := args[:len(args)-1], args[len(args)-1]
 			rows, err := codes.ByID(ids...)
@@ -23,8 +26,13 @@ func codesCopyCommand(files *shelf) *cobra.Command {
 				return &failure{exitInput, err}
 			}
 			ext := filepath.Ext(plan)
-			target := strings.TrimSuffix(plan, ext) + "-with-limits" + ext
-			if err := newFile(target); err != nil {
+			if target == "" {
+				target = strings.TrimSuffix(plan, ext) + "-with-limits" + ext
+			}
+			if ext != "" && !strings.EqualFold(filepath.Ext(target), ext) {
+				return &failure{exitInput, fmt.Errorf("%s: a copy of the plan is written, so the name must end in %s", target, ext)}
+			}
+			if err := newFile(target, "name another with --out"); err != nil {
 				return err
 			}
 			if _, err := workbook.Look(plan); err != nil {
@@ -36,7 +44,8 @@ func codesCopyCommand(files *shelf) *cobra.Command {
 				there, notCarried, refused = workbook.CopyRows(sheetRows(rows), plan, w)
 				return refused
 			})
-			if refused != nil {
+			var full *unwritable
+			if refused != nil && !errors.As(refused, &full) {
 				return &failure{exitInput, refused}
 			}
 			if err != nil {
@@ -54,6 +63,8 @@ func codesCopyCommand(files *shelf) *cobra.Command {
 			return nil
 		},
 	}
+	cmd.Flags().StringVar(&target, "out", "", "write the new workbook to `NEW.xlsx` (default PLAN-with-limits.xlsx beside the plan)")
+	return cmd
 }
 
 // sheetRows lays starter limits out as rows of a plan's sheets.

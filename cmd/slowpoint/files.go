@@ -9,9 +9,25 @@ import (
 	"unicode"
 )
 
+// unwritable is a file of the user's that could not be written.
+type unwritable struct {
+	path string
+	why  error
+}
+
+func (u *unwritable) Error() string {
+	return fmt.Sprintf("%s cannot be written (%v): choose another place, or make room", u.path, u.why)
+}
+
+func (u *unwritable) Unwrap() error { return u.why }
+
 // cannotWrite says which file could not be written and why, without the name of the temporary file.
 func cannotWrite(path string, err error) error {
-	return fmt.Errorf("%s cannot be written (%w): choose another place, or make room", path, cause(err))
+	var told *unwritable
+	if errors.As(err, &told) {
+		return told
+	}
+	return &unwritable{path, cause(err)}
 }
 
 // cause is an error of the system without the name of the file that it met.

@@ -14,7 +14,7 @@ func foodsCommand() *cobra.Command {
 	return &cobra.Command{
 		Use: "foods [NAME]", Short: "List the built-in foods with their composition, properties and sources",
 		Long:    "List the built-in foods with their composition, properties and sources. With NAME, or a part of one: their properties at more temperatures, frozen too.",
-		Example: "  slowpoint foods\n  slowpoint foods potato", Args: cobra.MaximumNArgs(1),
+		Example: "  slowpoint foods\n  slowpoint foods potato", Args: takes(0, 1, ""),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			out := cmd.OutOrStdout()
 			n, freezes := 0, false

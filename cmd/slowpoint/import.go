@@ -33,7 +33,7 @@ func importCommand(files *shelf) *cobra.Command {
 too, says which of their columns goes where; --propose writes one to begin with, in which you confirm each row. Rows that cannot be
 imported are listed in the plan's sheet "Not imported" with the reason; each value of the plan leads back to its cell in your files.`,
 		Example: "  slowpoint import Recipes.xlsx --propose map.xlsx\n  slowpoint import Recipes.xlsx --map map.xlsx",
-		Args:    cobra.MinimumNArgs(1),
+		Args:    takes(1, many, "name the spreadsheets to import: workbooks (.xlsx, .xlsm), CSV files or folders of them"),
 		RunE:    func(cmd *cobra.Command, args []string) error { return importThem(cmd, args, &o, files) },
 	}
 	f := cmd.Flags()
@@ -60,7 +60,11 @@ func importThem(cmd *cobra.Command, args []string, o *importOptions, files *shel
 	if !strings.EqualFold(filepath.Ext(target), ".xlsx") {
 		return &failure{exitInput, fmt.Errorf("%s: a workbook is written, so the name must end in .xlsx", target)}
 	}
-	if err := newFile(target); err != nil {
+	mend := "name another with --out"
+	if o.propose != "" {
+		mend = "choose another name"
+	}
+	if err := newFile(target, mend); err != nil {
 		return err
 	}
 	names, err := theirFiles(args, o.mapping, o.since)

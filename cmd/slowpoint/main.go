@@ -51,7 +51,7 @@ func run(args []string, in io.Reader, out, errs io.Writer) int {
 	root.SetOut(results)
 	root.SetErr(errs)
 	ended := make(chan error, 1)
-	go func() { ended <- root.ExecuteContext(ctx) }()
+	go func() { ended <- plainCommand(root, root.ExecuteContext(ctx)) }()
 	var err error
 	select {
 	case err = <-ended:
@@ -122,6 +122,7 @@ It supports planning; it does not replace measurement. Your food authority decid
 		SilenceUsage: true, SilenceErrors: true,
 		CompletionOptions: cobra.CompletionOptions{HiddenDefaultCmd: true},
 	}
+	root.SetFlagErrorFunc(plainFlag)
 	root.AddCommand(checkCommand(files), readCommand(), importCommand(files), blankCommand(files), codesCommand(files), foodsCommand(), verifyCommand(), versionCommand())
 	return root
 }

@@ -467,6 +467,24 @@ func TestWriteWhole(t *testing.T) {
 	}
 }
 
+// TestWhatCannotBeWritten: an error met while a file is written names the file that the user knows, once, not the temporary one.
+func TestWhatCannotBeWritten(t *testing.T) {
+	var s shelf
+	path := filepath.Join(t.TempDir(), "results.json")
+	f, err := s.spool(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	f.file.Close() // as a full disk would, further writing fails
+	_, err = f.Write(make([]byte, 1<<17))
+	for _, err := range []error{err, cannotWrite("results.zip", err), f.keep()} {
+		if err == nil || !strings.HasPrefix(err.Error(), path+" cannot be written (") || strings.Contains(err.Error(), ".slowpoint-") || strings.Count(err.Error(), path) != 1 {
+			t.Errorf("%v", err)
+		}
+	}
+	f.drop()
+}
+
 // Whoever runs a plan again without PDFs, or a part of it, is told which files in the folder are of an earlier run.
 func TestFilesOfAnEarlierRunAreTold(t *testing.T) {
 	out := filepath.Join(t.TempDir(), "results")

@@ -163,10 +163,24 @@ func (s *shelf) writeWhole(path string, write func(io.Writer) error) error {
 		return err
 	}
 	defer s.drop(f)
-	if err := write(f); err != nil {
+	if err := write(temporary{f, path}); err != nil {
 		return cannotWrite(path, err)
 	}
 	return s.keep(f, path)
+}
+
+// temporary is a file under its temporary name, whose errors name the file that it is to be.
+type temporary struct {
+	file *os.File
+	path string
+}
+
+func (t temporary) Write(p []byte) (int, error) {
+	n, err := t.file.Write(p)
+	if err != nil {
+		err = cannotWrite(t.path, err)
+	}
+	return n, err
 }
 
 // spooled is a results file that is written while the products come and gets its name at the end.
@@ -182,7 +196,7 @@ func (s *shelf) spool(path string) (*spooled, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &spooled{bufio.NewWriterSize(f, 1<<16), s, f, path}, nil
+	return &spooled{bufio.NewWriterSize(temporary{f, path}, 1<<16), s, f, path}, nil
 }
 
 // keep finishes the file under its name.

@@ -17,7 +17,7 @@ import (
 func verifyCommand() *cobra.Command {
 	var isMeasured bool
 	c := &cobra.Command{
-		Use: "verify", Short: "Solve problems with a known answer on this machine", Example: "  slowpoint verify\n  slowpoint verify --measured", Args: cobra.NoArgs,
+		Use: "verify", Short: "Solve problems with a known answer on this machine", Example: "  slowpoint verify\n  slowpoint verify --measured", Args: takes(0, 0, ""),
 		RunE: func(cmd *cobra.Command, _ []string) error {
 			out := cmd.OutOrStdout()
 			if isMeasured {

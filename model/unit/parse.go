@@ -175,6 +175,9 @@ func (q *Quantity) noUnit(word string) *Mistake {
 	if q.Name == Temperature.Name && (strings.EqualFold(word, "K") || strings.EqualFold(word, "kelvin")) {
 		return &Mistake{"is in kelvin, which is not accepted for a temperature", "convert it to °C (take 273.15 off) or °F"}
 	}
+	if u, letter := q.Alike(word); u != nil {
+		return &Mistake{"has the unit " + strconv.Quote(word) + " with the " + letter, "type it in Latin letters: " + u.Name()}
+	}
 	if q.Plain() {
 		return &Mistake{"is not a plain number", "type the number alone"}
 	}

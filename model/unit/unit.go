@@ -2,7 +2,10 @@
 // Units[0] of a quantity is what the program computes in.
 package unit
 
-import "strings"
+import (
+	"strings"
+	"unicode"
+)
 
 // Unit is one unit of a quantity: computed = (typed − Zero)·Scale/Per. Multiplier and divisor are apart so that
 // 25 mm is the float64 nearest to 0.025 m and 130 °F is exactly (130−32)/1.8 °C.
@@ -54,6 +57,35 @@ func (q *Quantity) Unit(name string) *Unit {
 	}
 	return nil
 }
+
+// Alike finds a unit that a name is written like, but for letters of another alphabet that look the same, as the Cyrillic С of °С, and tells
+// the first of these; nil if there is none.
+func (q *Quantity) Alike(name string) (u *Unit, letter string) {
+	plain := strings.Map(func(c rune) rune {
+		i := strings.IndexRune(lookalikes, c)
+		if i < 0 {
+			return c
+		}
+		if letter == "" {
+			alphabet := "Cyrillic"
+			if unicode.Is(unicode.Greek, c) {
+				alphabet = "Greek"
+			}
+			letter = alphabet + " letter " + string(c)
+		}
+		return rune(latin[len([]rune(lookalikes[:i]))])
+	}, name)
+	if letter == "" {
+		return nil, ""
+	}
+	return q.unitOfCell(plain), letter
+}
+
+// Letters of units that other alphabets have too, and the Latin ones.
+const (
+	lookalikes = "СсКкВМмНОоРрТАаЕеХхЅѕІіЈԌԛԝΒΕΗΙΚΜΝΟοΡΤΧ"
+	latin      = "CcKkBMmHOoPpTAaEeXxSsIiJGqwBEHIKMNOoPTX"
+)
 
 // Listing is every unit's printed name, for messages: "m, mm, cm, in or ft".
 func (q *Quantity) Listing() string {

@@ -6,6 +6,18 @@ import (
 	"testing"
 )
 
+// TestLookalikes: every letter of another alphabet has its Latin one, and is none itself.
+func TestLookalikes(t *testing.T) {
+	if n := len([]rune(lookalikes)); n != len(latin) {
+		t.Errorf("%d letters for %d", len(latin), n)
+	}
+	for _, c := range lookalikes {
+		if c < 0x80 {
+			t.Errorf("%c is Latin", c)
+		}
+	}
+}
+
 func TestParse(t *testing.T) {
 	mm, degC, minute := Length.Unit("mm"), Temperature.Unit("°C"), Duration.Unit("min")
 	for _, c := range []struct {
@@ -83,6 +95,11 @@ func TestParse(t *testing.T) {
 		{"division by zero", &Length, "1/0 in", mm, Unsure, 0, "not a number"},
 		{"feet a second", &Speed, "10 ft/s", Speed.Unit("m/s"), Unsure, 3.048, ""}, // 1 ft = 0.3048 m exactly (international yard, 1959)
 		{"unit of a bare number", &Number, "3 kg", &Number.Units[0], Unsure, 0, "plain number"},
+		{"Cyrillic C", &Temperature, "75 °С", degC, Unsure, 0, `has the unit "°С" with the Cyrillic letter С – type it in Latin letters: °C`},
+		{"Cyrillic m", &Length, "25 мм", mm, Unsure, 0, "Cyrillic letter м"},
+		{"Cyrillic C of a difference", &Difference, "10 °С", Difference.Unit("°C difference"), Unsure, 0, "type it in Latin letters: °C difference"},
+		{"Greek K", &Film, "25 W/m²Κ", Film.Unit("W/m2K"), Unsure, 0, "Greek letter Κ"},
+		{"Cyrillic letters of no unit", &Length, "25 рср", mm, Unsure, 0, "is not a number with a unit of length"},
 		{"per cent in the cell", &Percent, "65 %", &Percent.Units[0], Unsure, 65, ""},
 	} {
 		t.Run(c.name, func(t *testing.T) {

@@ -330,6 +330,11 @@ func spoil(t testing.TB, data []byte, how string) []byte {
 			case "bomb":
 				i := bytes.LastIndexByte(body, '<')
 				body = append(append(append([]byte(nil), body[:i]...), bytes.Repeat([]byte(" "), 80<<20)...), body[i:]...)
+			case "stuff":
+				n, piece, _ := strings.Cut(arg, " ")
+				times, _ := strconv.Atoi(n)
+				i := bytes.LastIndexByte(body, '<')
+				body = append(append(append([]byte(nil), body[:i]...), strings.Repeat(piece, times)...), body[i:]...)
 			default:
 				t.Fatalf("%q is no damage", what)
 			}

@@ -547,7 +547,7 @@ func contents(data []byte) (map[string]map[string]int, error) {
 		return nil, err
 	}
 	out := map[string]map[string]int{}
-	m := &meter{left: mostBytes}
+	m := &meter{left: mostBytes, spare: mostElements + inCell*mostCells}
 	for _, f := range z.File {
 		n := strings.ToLower(f.Name)
 		if strings.HasSuffix(n, "/") {
@@ -558,7 +558,7 @@ func contents(data []byte) (map[string]map[string]int, error) {
 		if !strings.HasSuffix(n, ".xml") && !strings.HasSuffix(n, ".rels") {
 			continue
 		}
-		if err := m.part(f, func(r io.Reader) error { return countElements(r, count) }); err != nil {
+		if err := m.part(f, func(r metered) error { return countElements(r, count) }); err != nil {
 			return nil, err
 		}
 	}
@@ -566,8 +566,8 @@ func contents(data []byte) (map[string]map[string]int, error) {
 }
 
 // countElements counts the elements of a part by name; one without attributes, text and elements says nothing and is left out.
-func countElements(r io.Reader, count map[string]int) error {
-	d := xml.NewDecoder(r)
+func countElements(r metered, count map[string]int) error {
+	d := &walker{Decoder: xml.NewDecoder(r), m: r.m}
 	open := "" // the element just begun, if nothing of it was seen yet
 	for {
 		t, err := d.Token()

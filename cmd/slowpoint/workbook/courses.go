@@ -10,6 +10,8 @@ import (
 // course is the rows of one name in Courses.
 type course struct {
 	model.Course
+	line     *Line // the first
+	used     bool  // a row of Steps or Faces names it
 	because  cell.Errors
 	readings []echoes
 }
@@ -29,7 +31,7 @@ func (r *reader) readCourses() {
 		}
 		c := r.courses[Key(name)]
 		if c == nil {
-			c = &course{Course: model.Course{Name: name}}
+			c = &course{Course: model.Course{Name: name}, line: l}
 			r.courses[Key(name)] = c
 			if at != nil && *at != 0 {
 				l.Fault("Time", l.Entry("Time").Text, courseStart, name)
@@ -51,6 +53,18 @@ func (r *reader) readCourses() {
 		}
 		reasons(&c.because, l.because)
 		c.readings = append(c.readings, l.readings...)
+	}
+}
+
+// unusedCourses notes courses that no row of Steps or Faces names.
+func (r *reader) unusedCourses() {
+	if len(r.unread["Steps"]) > 0 || len(r.unread["Faces"]) > 0 {
+		return
+	}
+	for _, c := range r.courses {
+		if !c.used {
+			c.line.Remark(cell.Note, "Course", c.Name, courseUnused)
+		}
 	}
 }
 

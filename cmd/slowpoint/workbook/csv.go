@@ -22,6 +22,7 @@ const (
 	mostFile    = 64 << 20  // of a workbook file
 	mostBytes   = 256 << 20 // of a plan, unzipped
 	mostCells   = 3_000_000 // of a plan
+	mostMerged  = 20_000    // ranges of merged cells of a sheet
 	mostText    = 32_767    // characters of a cell, as in spreadsheets
 )
 
@@ -82,10 +83,7 @@ func csvGrid(name string, data []byte) *Grid {
 			best, score = d, n
 		}
 	}
-	g.Rows, g.Refused = csvRows(data, best, mostRows)
-	if g.Refused != "" {
-		g.Mend = "save the sheet as CSV again from your spreadsheet program"
-	}
+	g.Rows, g.Refused, g.Mend = csvRows(data, best, mostRows, sheet == nil)
 	g.commas = best == ','
 	return g
 }
@@ -103,7 +101,7 @@ func badByte(data []byte) int {
 
 // likeness tells how well a delimiter divides a sheet: known headings in its best row count first, then data rows that are as wide.
 func likeness(sheet *Sheet, data []byte, d rune) int {
-	rows, _ := csvRows(data, d, 40)
+	rows, _, _ := csvRows(data, d, 40, false)
 	best, width := 0, 0
 	for i := range rows {
 		if n := len(headings(sheet, &rows[i])); n > best {
@@ -173,31 +171,42 @@ func foreignGrid(data []byte) *Grid {
 	return g
 }
 
-// csvRows reads at most most filled rows. Row numbers are those that a spreadsheet shows: a line break within quotes starts no row.
-func csvRows(data []byte, d rune, most int) (rows []Row, refused string) {
+// csvRows reads at most most filled rows; foreign ones are of somebody's own sheet. Row numbers are those that a spreadsheet shows: a line
+// break within quotes starts no row.
+func csvRows(data []byte, d rune, most int, foreign bool) (rows []Row, refused, mend string) {
 	r := csv.NewReader(bytes.NewReader(data))
 	r.Comma, r.FieldsPerRecord, r.ReuseRecord = d, -1, true
 	breaks := 0 // line breaks within quotes so far
-	cells := 0
+	cells, widest := 0, 0
+	unreadable := func(why string) ([]Row, string, string) {
+		return rows, fill(csvUnreadable.msg, []string{why}), "save the sheet as CSV again from your spreadsheet program"
+	}
 	for {
 		rec, err := r.Read()
 		if err == io.EOF {
-			return rows, ""
+			return rows, "", ""
 		}
 		if err != nil {
 			var pe *csv.ParseError
 			if errors.As(err, &pe) {
-				return rows, fill(csvUnreadable.msg, []string{fmt.Sprintf("line %d: %s", pe.Line, plainCSV(pe.Err))})
+				return unreadable(fmt.Sprintf("line %d: %s", pe.Line, plainCSV(pe.Err)))
 			}
-			return rows, fill(csvUnreadable.msg, []string{err.Error()})
+			return unreadable(err.Error())
 		}
 		line, _ := r.FieldPos(0)
 		row := Row{N: line - breaks}
+		widest = max(widest, len(rec))
 		for i, f := range rec {
-			breaks += strings.Count(f, "\n")
+			if n := strings.Count(f, "\n"); n > 0 {
+				breaks += n
+				if swallows(f, d, widest, foreign) {
+					at, _ := r.FieldPos(i)
+					return rows, fill(csvUnreadable.msg, []string{fill(swallowed.msg, []string{fmt.Sprint(at), fmt.Sprint(at + n), signNames[d]})}), swallowed.hint
+				}
+			}
 			if f = tidy(f); f != "" {
 				if i >= mostColumns || tooLong(f, mostText) {
-					return rows, fill(csvUnreadable.msg, []string{fmt.Sprintf("line %d has more than %d columns or a cell of more than %d characters", line, mostColumns, mostText)})
+					return unreadable(fmt.Sprintf("line %d has more than %d columns or a cell of more than %d characters", line, mostColumns, mostText))
 				}
 				k := Text
 				if failed(f) {
@@ -210,15 +219,24 @@ func csvRows(data []byte, d rune, most int) (rows []Row, refused string) {
 			continue
 		}
 		if cells += len(row.Cells); cells > mostCells {
-			return rows, fill(csvUnreadable.msg, []string{fmt.Sprintf("more than %d cells", mostCells)})
+			return unreadable(fmt.Sprintf("more than %d cells", mostCells))
 		}
 		if rows = append(rows, row); len(rows) > most {
 			if most == mostRows {
-				return nil, fill(tooManyRows.msg, []string{fmt.Sprint(mostRows)})
+				return nil, fill(tooManyRows.msg, []string{fmt.Sprint(mostRows)}), tooManyRows.hint
 			}
-			return rows, ""
+			return rows, "", ""
 		}
 	}
+}
+
+var signNames = map[rune]string{',': "comma", ';': "semicolon", '\t': "tab"}
+
+// swallows tells whether a cell of several lines may be rows between two stray quotation marks: it holds the sign that divides the cells.
+// In a sheet of somebody's own, where a remark of several lines is more likely, it holds that of half a row.
+func swallows(cell string, d rune, width int, foreign bool) bool {
+	n := strings.Count(cell, string(d))
+	return n > 0 && (!foreign || 2*n >= width-1)
 }
 
 // tooLong tells whether a text has more than most characters.

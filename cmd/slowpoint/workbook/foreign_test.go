@@ -86,3 +86,17 @@ func TestOtherBook(t *testing.T) {
 		}
 	}
 }
+
+// TestSwallowedRow: in a sheet of somebody's own a remark of several lines may hold a comma, but not half a row.
+func TestSwallowedRow(t *testing.T) {
+	const head = "Dish,Depth cm,Temp °C,Remark\n"
+	for text, want := range map[string]string{
+		"Soup,4,75,\"cut,\nand chilled\"\n":     "",
+		"Soup,4,\"75\nBeans,5,80\",\"hot\"\n":   "from line 2 to line 3 and holds a comma",
+		"Soup,4,\"75\nhot\",\"cut\nchilled\"\n": "",
+	} {
+		if g := foreignGrid([]byte(head + text)); !strings.Contains(g.Refused, want) || (g.Refused == "") != (want == "") {
+			t.Errorf("%q: %q, want %q", text, g.Refused, want)
+		}
+	}
+}

@@ -63,6 +63,7 @@ type Entry struct {
 	Col     int32
 	Kind    Kind
 	Form    Form
+	Shows   Display
 	Formula bool
 	Linked  bool // the formula takes something from another workbook
 	Struck  bool // struck through, wholly or in part

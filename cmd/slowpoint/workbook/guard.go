@@ -58,7 +58,7 @@ func damaged(part string, err error) error {
 	why := err.Error()
 	var syntax *xml.SyntaxError
 	switch {
-	case errors.Is(err, errTooBig), errors.Is(err, errTooMany):
+	case errors.Is(err, errTooBig), errors.Is(err, errTooMany), errors.Is(err, errLoaded), errors.Is(err, errMerged):
 		return err
 	case errors.As(err, &syntax):
 		why = syntax.Msg + fmt.Sprintf(", line %d", syntax.Line)
@@ -77,6 +77,10 @@ var errTooBig = fmt.Errorf("the workbook unpacks to more than %d MB; a plan is s
 
 var errTooMany = fmt.Errorf("the workbook has more than %d cells, those counted that are formatted and blank; delete the blank rows below the tables of each sheet, or divide the plan", mostCells)
 
+var errLoaded = fmt.Errorf("the workbook holds more than %d elements besides its cells: formats, links, merged ranges and the like; a plan has far fewer: copy the tables of each sheet into a new workbook", mostElements)
+
+var errMerged = fmt.Errorf("has more than %d merged ranges; unmerge its cells, or copy its table into a new workbook", mostMerged)
+
 func utf16(s string) []byte {
 	var out []byte
 	for i := 0; i < len(s); i++ {
@@ -85,8 +89,11 @@ func utf16(s string) []byte {
 	return out
 }
 
-// meter reads parts of the archive and stops when all of them together unpack to too much.
-type meter struct{ left int64 }
+// meter reads parts of the archive and stops when all of them together are too much.
+type meter struct {
+	left  int64 // bytes that may still be unpacked
+	spare int   // elements that may still come, besides those that are counted by themselves
+}
 
 type metered struct {
 	r io.Reader
@@ -102,7 +109,7 @@ func (r metered) Read(p []byte) (int, error) {
 }
 
 // part reads one part with use, then to its end, so that its checksum is tested too.
-func (m *meter) part(f *zip.File, use func(io.Reader) error) error {
+func (m *meter) part(f *zip.File, use func(metered) error) error {
 	rc, err := f.Open()
 	if err != nil {
 		return damaged(f.Name, err)
@@ -120,45 +127,90 @@ func (m *meter) part(f *zip.File, use func(io.Reader) error) error {
 	return nil
 }
 
-// tagged stops XML that is no workbook: megabytes without an element, or more elements than a plan can have.
+// tagged stops XML that is no workbook: megabytes without an element.
 type tagged struct {
-	r           io.Reader
-	bare, count int // bytes since the last element; elements, begun and ended
+	r    io.Reader
+	bare int // bytes since the last element
 }
 
-const (
-	mostBare     = 4 << 20
-	mostElements = 24_000_000
-)
+const mostBare = 4 << 20
 
 func (t *tagged) Read(p []byte) (int, error) {
 	n, err := t.r.Read(p)
 	if i := bytes.LastIndexByte(p[:n], '<'); i >= 0 {
 		t.bare = n - i
-		t.count += bytes.Count(p[:n], []byte("<"))
 	} else {
 		t.bare += n
 	}
-	switch {
-	case t.bare > mostBare:
+	if t.bare > mostBare {
 		return 0, fmt.Errorf("it holds more than %d MB in one piece", mostBare>>20)
-	case t.count > mostElements:
-		return 0, errTooBig
 	}
 	return n, err
 }
 
+// walker gives the tokens of XML, and stops where a small file unpacks to what takes minutes to read: elements deeper within each other
+// than in any workbook, or more of them than a plan can have. Attributes beyond the usual number, comments, and text in pieces count as
+// elements too.
+type walker struct {
+	*xml.Decoder
+	m      *meter
+	deep   int  // elements that are open
+	pieces bool // the token before was no element's begin or end
+}
+
+const (
+	mostElements   = 1_000_000 // of a plan, besides its cells, rows and shared texts, which are counted by themselves
+	mostNested     = 100       // elements within each other; a sheet has a dozen (measured)
+	mostAttributes = 40        // of an element; the first of a sheet has up to 20 (from memory)
+)
+
+func (w *walker) Token() (xml.Token, error) {
+	t, err := w.Decoder.Token() // and not RawToken: it checks that elements match
+	if err != nil {
+		return nil, err
+	}
+	pieces := false
+	switch t := t.(type) {
+	case xml.StartElement:
+		if w.deep++; w.deep > mostNested {
+			return nil, fmt.Errorf("it holds more than %d elements within each other, which no workbook does", mostNested)
+		}
+		w.m.spare -= 1 + max(0, len(t.Attr)-mostAttributes)
+	case xml.EndElement:
+		w.deep--
+	default:
+		if pieces = true; w.pieces {
+			w.m.spare--
+		}
+	}
+	w.pieces = pieces
+	if w.m.spare < 0 {
+		return nil, errLoaded
+	}
+	return t, nil
+}
+
+// Skip reads up to the end of the element that was just opened.
+func (w *walker) Skip() error {
+	for end := w.deep - 1; w.deep > end; {
+		if _, err := w.Token(); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
 // wellFormed reads XML to its end without making anything of it.
-func wellFormed(r io.Reader) error {
-	return elements(r, func(*xml.Decoder, xml.StartElement) error { return nil }, nil)
+func wellFormed(r metered) error {
+	return elements(r, func(*walker, xml.StartElement) error { return nil }, nil)
 }
 
 // elements walks through XML: start is called for each element, end (which may be nil) for each end. Declarations are refused:
 // no workbook needs them, and they can make a small file expand without end.
-func elements(r io.Reader, start func(*xml.Decoder, xml.StartElement) error, end func(name string)) error {
-	d := xml.NewDecoder(&tagged{r: r})
+func elements(r metered, start func(*walker, xml.StartElement) error, end func(name string)) error {
+	d := &walker{Decoder: xml.NewDecoder(&tagged{r: r}), m: r.m}
 	for any := false; ; {
-		t, err := d.Token() // Token and not RawToken: it checks that elements match
+		t, err := d.Token()
 		switch {
 		case err == io.EOF && !any:
 			return io.ErrUnexpectedEOF

@@ -124,6 +124,7 @@ func (r *reader) readLimits() {
 	for _, l := range t.strays { // nor what these rows were meant to be
 		ls.unknown(l.Ref(), "(row "+strconv.Itoa(l.row.N)+")", l.because[0])
 	}
+	ls.nearFamilies()
 	for _, sc := range ls.order {
 		for _, p := range sc.products {
 			p.readings = append(p.readings, sc.readings)
@@ -379,6 +380,67 @@ func (ls *limits) appliesTo(l *Line, lim *rules.Limit) *scope {
 	}
 	l.Fault("Applies to", typed, appliesUnknown, hint)
 	return ls.scope("", nil)
+}
+
+// nearFamilies warns of products whose family no limit names and is written nearly like one that a limit is for.
+func (ls *limits) nearFamilies() {
+	var named []string
+	first := map[string]*rules.Limit{} // by the key of a family
+	for i := range ls.plan.Limits {
+		lim := &ls.plan.Limits[i]
+		if f := lim.Applies.Family; f != "" && first[Key(f)] == nil {
+			first[Key(f)] = lim
+			named = append(named, f)
+		}
+	}
+	if len(named) == 0 {
+		return
+	}
+	meant := map[string]string{} // by the key of a family
+	for _, p := range ls.products {
+		k := Key(p.Family)
+		if k == "" || first[k] != nil {
+			continue
+		}
+		near, asked := meant[k]
+		if !asked {
+			if near = ls.near(p.Family, func() []string { return named }); near != "" && !slip(k, Key(near)) {
+				near = ""
+			}
+			meant[k] = near
+		}
+		if near != "" {
+			p.line.Remark(cell.Warning, "Family", p.Family, familyNear, near, strconv.Quote(first[Key(near)].Name))
+		}
+	}
+}
+
+// slip tells whether one name may be the other misspelt: one letter apart, two in long names, or written with other blanks. Names that
+// differ in numbers or single letters only, as line 1 and line 2, are two.
+func slip(a, b string) bool {
+	solid := func(s string) string { return strings.ReplaceAll(s, " ", "") }
+	if solid(a) == solid(b) {
+		return true
+	}
+	unnumbered := func(s string) string {
+		return strings.Map(func(c rune) rune {
+			if c >= '0' && c <= '9' {
+				return -1
+			}
+			return c
+		}, s)
+	}
+	x, y := strings.Fields(a), strings.Fields(b)
+	lettered := len(x) == len(y)
+	for i := range x {
+		lettered = lettered && (x[i] == y[i] || len([]rune(x[i])) == 1 && len([]rune(y[i])) == 1)
+	}
+	if lettered || unnumbered(a) == unnumbered(b) {
+		return false
+	}
+	n := edits([]rune(a), []rune(b))
+	short := min(len([]rune(a)), len([]rune(b)))
+	return n == 1 && short >= 4 || n == 2 && short >= 6
 }
 
 func (ls *limits) familyNames() []string {

@@ -24,6 +24,7 @@ var (
 	doubledColumn = saying{"is there twice, in columns {1} and {2}", "keep one of the two columns"}
 	headingNoUnit = saying{"has no unit; {1} needs one", "put the unit in brackets, as {2}"}
 	headingOther  = saying{"has the unit {1}, which is not a unit of {2}", "units of {2} are {3}"}
+	headingAlike  = saying{"has a unit with the {1}", "type it in Latin letters: {2}"}
 	headingKelvin = saying{"is in kelvin, which is not accepted for a temperature", "use °C or °F"}
 	headingNoDiff = saying{"is headed as a temperature, but it is a temperature difference", "write {1} (°C difference) or {1} (°F difference)"}
 	noHeading     = saying{"stands in a column without a heading", "give column {1} a heading, one that starts with # if it is your own, or clear the cell{2}"}
@@ -32,6 +33,7 @@ var (
 	hiddenColumn  = saying{"Column {1} is hidden, and its values are used", "unhide it so that everybody sees what is calculated"}
 	tooManyRows   = saying{"The sheet has more than {1} rows", "divide the plan into several"}
 	csvUnreadable = saying{"The file cannot be read as CSV: {1}", "{2}"}
+	swallowed     = saying{"a cell in quotation marks goes from line {1} to line {2} and holds a {3}, so two rows may have become one", "take out the stray quotation marks, or the line break of the cell"}
 	notUTF8       = saying{"The file is not in UTF-8 ({1})", "save it as CSV UTF-8"}
 
 	// sheets that the import makes
@@ -67,6 +69,13 @@ var (
 	isDate         = saying{"is formatted as a date", "type {1}, and give the cell a number format"}
 	isTime         = saying{"is formatted as a time", "type {1}, and give the cell a number format"}
 	isWorded       = saying{"is shown with the unit {1} by its number format, but the heading says {2}", "let both say the same unit"}
+	shownNothing   = saying{"is stored, but the cell shows nothing of it, by its number format", "look whether the number counts, and give the cell a number format that shows it"}
+	shownWords     = saying{"is stored, but the cell shows words in its place, by its number format", "look whether the number counts, and give the cell a number format that shows it"}
+	shownThousands = saying{"is stored, but the cell shows it divided by a thousand, by the comma that ends its number format", "look which number counts, and give the cell a number format without that comma"}
+	shownOther     = saying{"is stored, but the cell shows another number, by its number format", "look which number counts, and give the cell the number format General"}
+	shownTimeOfDay = saying{"is shown as a time of day by its number format", "for a duration give the cell the number format [h]:mm, or type a number with its unit, as 2 h"}
+	shownOver      = saying{"is stored, but the cell shows only what is over after whole {1}, by its number format", "look which time counts, and give the cell the number format {2}, or type a number with its unit, as 90 min"}
+	raisedDigits   = saying{"holds raised or lowered digits, of a footnote perhaps, which would be read with the number", "type the number alone, and the footnote into another column"}
 	isPercent      = saying{"is formatted as a percentage", "type {1}, and give the cell a number format"}
 	isTruth        = saying{"is a logical value", "type {1}"}
 	decimalMixed   = saying{"shows a decimal {1}, but {2} shows a decimal {3}", "use one decimal sign throughout, or fill the item Decimal sign of the sheet Plan"}
@@ -79,6 +88,7 @@ var (
 
 	// Plan
 	unknownItem = saying{"is not an item of a plan{1}", "items are: {2}"}
+	ignoresOurs = saying{"is a column of slowpoint's own, in {1}, and cannot be ignored", "rename your column, or start its heading with #"}
 	noProducts  = saying{"The plan has no product", "fill the sheet Products"}
 
 	// products, foods
@@ -118,6 +128,7 @@ var (
 		"type its thickness over its conductivity, 0.00025 m²K/W for 0.05 mm of a plastic of 0.2 W/(m·K), or a film coefficient that includes it; a wrap with air beneath it is no tight one: take loose lid, about 0.04 m²K/W a millimetre of air"}
 	openWithWrap   = saying{"is given, but the cover is open", "clear the cell, or name the cover"}
 	courseUnknown  = saying{"is not a course of the sheet Courses{1}", "correct the name"}
+	courseUnused   = saying{"is a course that no row of Steps or Faces names", "name it in the column Course of Steps, or take its rows out"}
 	courseShort    = saying{"is a course of {1}, shorter than the step of {2}", "add rows to the course up to the end of the step"}
 	courseLong     = saying{"is a course of {1}, longer than the step of {2}; the rest is cut off", ""}
 	courseStart    = saying{"is the first time of the course {1}; a course starts at 0", "add a row at 0, the start of the step"}
@@ -146,6 +157,7 @@ var (
 	stageNowhere   = saying{"is a stage of no step of the products that the limit applies to", "correct the stage, or take the row out"}
 	noPair         = saying{"is a pair of stages, which only delay uses", "join stages by +, as cook + rest"}
 	appliesUnknown = saying{"matches no product and no family{1}", "type all, family: NAME, or the name of a product"}
+	familyNear     = saying{"is a family that no limit names; did you mean {1}, which the limit {2} is for?", "correct the family, or give it limits of its own"}
 	familyUnknown  = saying{"matches no family of the sheet Products{1}", "correct the name of the family"}
 	whereUnknown   = saying{"is not a place{1}", "type every point, surface, centre, medium, or the name of a row of Points"}
 	whereLacking   = saying{"is a point that {1} does not have", "add it to Points for each product that the limit applies to"}

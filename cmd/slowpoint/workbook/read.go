@@ -222,6 +222,7 @@ func (r *reader) read() {
 	r.readLayers()
 	r.readSteps()
 	r.readFaces()
+	r.unusedCourses()
 	r.readPoints()
 	r.notYet()
 	r.chains()
@@ -337,7 +338,7 @@ const altitude = "Altitude (m)"
 
 // ofAll refuses all products for the faults of an item that all of them are calculated or read with.
 func (r *reader) ofAll(l *Line, item string) {
-	if item == altitude || item == "Decimal sign" {
+	if item == altitude || item == "Decimal sign" || item == "Ignore columns" {
 		r.unread["Plan"] = append(r.unread["Plan"], l.because...)
 	}
 }
@@ -355,6 +356,10 @@ func (r *reader) planItem(l *Line, known, item, value string) {
 	}
 	switch known {
 	case altitude:
+		if no := l.Entry("Value").differs(value); no != nil {
+			l.refuse("Value", no)
+			return
+		}
 		_, inside := SplitHeading(item)
 		v, m := unit.Length.Parse(value, unit.Length.Unit(inside), unit.Point)
 		if m != nil || v.Computed < -500 || v.Computed > 6000 {
@@ -376,9 +381,24 @@ func (r *reader) planItem(l *Line, known, item, value string) {
 		choice()
 	case "Ignore columns":
 		for _, c := range strings.FieldsFunc(value, func(c rune) bool { return c == ',' || c == ';' }) {
+			if of := r.sheetsWith(c); len(of) > 0 {
+				l.Fault("Value", tidy(c), ignoresOurs, and(of))
+				continue
+			}
 			r.ignore[Key(c)] = true
 		}
 	}
+}
+
+// sheetsWith names the sheets that have a column of a heading, written with or without a unit.
+func (r *reader) sheetsWith(heading string) (of []string) {
+	name, _ := SplitHeading(heading)
+	for _, s := range r.list {
+		if s.known(Key(name)) != nil {
+			of = append(of, s.Name)
+		}
+	}
+	return of
 }
 
 // decimalSign looks at every text of a column of numbers for a decimal sign beyond doubt, unless the sheet Plan says it.

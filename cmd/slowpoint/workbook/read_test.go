@@ -416,7 +416,7 @@ func TestStoredDates(t *testing.T) {
 
 // TestWholePlan: what is bigger than the limits is refused in words.
 func TestTooBig(t *testing.T) {
-	m := &meter{left: 1000}
+	m := &meter{left: 1000, spare: mostElements}
 	name := filepath.Join(t.TempDir(), "plan.xlsx")
 	newRecipe(t, "").workbook(t, name)
 	data, err := os.ReadFile(name)
@@ -433,14 +433,90 @@ func TestTooBig(t *testing.T) {
 	if err == nil || !strings.Contains(err.Error(), "unpacks to more than") {
 		t.Error(err)
 	}
-	if err := wellFormed(strings.NewReader("<a><!DOCTYPE x></a>")); err == nil {
+	if err := wellFormed(xmlOf("<a><!DOCTYPE x></a>")); err == nil {
 		t.Error("a document type was taken")
 	}
-	if err := wellFormed(strings.NewReader("<a><b></a>")); err == nil {
+	if err := wellFormed(xmlOf("<a><b></a>")); err == nil {
 		t.Error("elements that do not match were taken")
 	}
-	if err := wellFormed(strings.NewReader("<a>" + strings.Repeat(" ", mostBare+1))); err == nil {
+	if err := wellFormed(xmlOf("<a>" + strings.Repeat(" ", mostBare+1))); err == nil {
 		t.Error("megabytes without an element were taken")
+	}
+}
+
+// xmlOf is a part of a workbook with nothing before it.
+func xmlOf(s string) metered {
+	return metered{strings.NewReader(s), &meter{left: mostBytes, spare: mostElements}}
+}
+
+// TestLoadedXML: what takes long to read and holds nothing is stopped, however it is made; what is spare is that of all parts together.
+func TestLoadedXML(t *testing.T) {
+	const spare = 1000
+	for _, c := range []struct {
+		name, piece string
+		n           int
+		want        string
+	}{
+		{"elements", "<e/>", spare - 1, ""},
+		{"one element more", "<e/>", spare, errLoaded.Error()},
+		{"comments", "<!-- -->", spare + 2, errLoaded.Error()},
+		{"text in pieces", "<![CDATA[1]]>", spare + 2, errLoaded.Error()},
+		{"text between elements", "<e/> ", spare - 1, ""},
+		{"attributes", "<e" + strings.Repeat(` a="1"`, mostAttributes+spare/10) + "/>", 10, errLoaded.Error()},
+		{"usual attributes", "<e" + strings.Repeat(` a="1"`, mostAttributes) + "/>", 10, ""},
+		{"deep", "<e>", mostNested, "elements within each other"},
+		{"deep enough", strings.Repeat("<e>", mostNested-1) + strings.Repeat("</e>", mostNested-1), 2, ""},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			r := xmlOf("<a>" + strings.Repeat(c.piece, c.n) + "</a>")
+			r.m.spare = spare
+			err := wellFormed(r)
+			if (err == nil) != (c.want == "") || err != nil && !strings.Contains(err.Error(), c.want) {
+				t.Errorf("%v, want %q", err, c.want)
+			}
+		})
+	}
+	const head = `<worksheet><sheetData>`
+	full := func(rows string) metered { return xmlOf(head + rows + "</sheetData></worksheet>") }
+	for _, c := range []struct {
+		name, rows string
+		cells      int // that may come
+		want       error
+	}{
+		{"cells with all that they hold", strings.Repeat(`<row><c t="inlineStr"><f>A1</f><v>1</v><is><t>x</t></is></c></row>`, 400), 400, nil},
+		{"one cell more", strings.Repeat(`<row><c><v>1</v></c></row>`, 401), 400, errTooMany},
+		{"empty rows", strings.Repeat(`<row/>`, 402), 400, errTooMany},
+		{"a cell stuffed", `<row><c><v>1</v>` + strings.Repeat("<e/>", spare+inCell) + `</c></row>`, 400, errLoaded},
+		{"a text stuffed", `<row><c t="inlineStr"><is>` + strings.Repeat("<rPh><e/></rPh>", spare) + `</is></c></row>`, 400, errLoaded},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			r := full(c.rows)
+			r.m.spare = spare
+			if err := (&book{}).sheet(r, &Grid{}, &c.cells); err != c.want {
+				t.Errorf("%v, want %v", err, c.want)
+			}
+		})
+	}
+	r := xmlOf("<sst>" + strings.Repeat(`<si><r><rPr><b/><sz/><color/><rFont/><family/><scheme/></rPr><t>x</t></r><r><t>y</t></r></si>`, 200) + "</sst>")
+	r.m.spare = spare
+	if err := (&book{}).readStrings(r); err != nil {
+		t.Errorf("shared texts in two writings: %v", err)
+	}
+}
+
+// TestSlip: which names of families are likely one name misspelt.
+func TestSlip(t *testing.T) {
+	for _, c := range []struct {
+		a, b string
+		want bool
+	}{
+		{"trays", "tray", true}, {"trays", "trais", true}, {"cook chill", "cookchill", true}, {"sausage rolls", "sausag rols", true}, {"ready-meals", "ready meals", true},
+		{"ham", "jam", false}, {"beef", "beets", false}, {"rolls", "tolla", false}, {"soup 2", "soup 1", false}, {"pie 12 cm", "pie 14 cm", false}, {"line a", "line b", false},
+		{"chilled trays", "chilled trout", false},
+	} {
+		if got := slip(c.a, c.b); got != c.want {
+			t.Errorf("%s, %s: %v", c.a, c.b, got)
+		}
 	}
 }
 
@@ -559,7 +635,7 @@ func TestCells(t *testing.T) {
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			b, g, left := &book{}, &Grid{HiddenCols: map[int]bool{}}, 100
-			err := b.sheet(strings.NewReader(head+c.xml+"</sheetData></worksheet>"), g, &left)
+			err := b.sheet(xmlOf(head+c.xml+"</sheetData></worksheet>"), g, &left)
 			var out []string
 			for _, r := range g.Rows {
 				for _, e := range r.Cells {
@@ -613,7 +689,7 @@ func FuzzSheet(f *testing.F) {
 	f.Add(`<worksheet><cols><col min="1" max="3" hidden="1"/></cols><sheetData><row hidden="1"><c><f>1</f></c></row></sheetData></worksheet>`)
 	f.Fuzz(func(t *testing.T, s string) {
 		b, g, left := &book{strings: []string{"Product"}, forms: []Form{Bare, Clock}}, &Grid{Name: "Products", HiddenCols: map[int]bool{}}, 1000
-		if b.sheet(strings.NewReader(s), g, &left) == nil {
+		if b.sheet(xmlOf(s), g, &left) == nil {
 			understand([]*Grid{g}, &Plan{})
 		}
 	})

@@ -246,6 +246,9 @@ func (r *reader) exposure(l *Line, x *model.Exposure, durationS float64) *course
 // medium reads Temperature or Course, and what kind of temperature it is.
 func (r *reader) medium(l *Line, x *model.Exposure, durationS float64) *course {
 	typed, name := l.Value("Temperature"), l.Words("Course")
+	if c := r.courses[Key(name)]; c != nil {
+		c.used = true
+	}
 	if !l.Filled("Temperature is") {
 		if typed != nil || name != "" {
 			l.note("Temperature is", "", "set-point", "blank: a set-point is taken")
@@ -272,7 +275,12 @@ func (r *reader) medium(l *Line, x *model.Exposure, durationS float64) *course {
 			return nil
 		}
 		if c == nil {
-			l.Fault("Course", name, courseUnknown, r.offer(name, r.courseNames))
+			offer := ""
+			if near := r.near(name, r.courseNames); near != "" {
+				offer = "; did you mean " + near + "?"
+				r.courses[Key(near)].used = true // as it seems
+			}
+			l.Fault("Course", name, courseUnknown, offer)
 			return nil
 		}
 		l.suffer(c.because)

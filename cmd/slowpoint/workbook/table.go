@@ -254,6 +254,10 @@ func headingUnit(at cell.Ref, typed, inside string, c *Column) (*unit.Unit, *cel
 	case q == &unit.Temperature && (strings.EqualFold(inside, "K") || strings.EqualFold(inside, "kelvin")):
 		e = headingKelvin.problem(at, cell.Fault, c.Heading, typed)
 	default:
+		if u, letter := q.Alike(inside); u != nil {
+			e = headingAlike.problem(at, cell.Fault, c.Heading, typed, letter, u.Name())
+			break
+		}
 		e = headingOther.problem(at, cell.Fault, c.Heading, typed, strconv.Quote(inside), q.Name, q.Listing())
 	}
 	return nil, &e

@@ -98,7 +98,7 @@ func (g *Grid) Shown(e *Entry) string {
 	if e.Kind != Figure {
 		return e.Text
 	}
-	x, err := strconv.ParseFloat(e.Text, 64)
+	x, err := storedNumber(e.Text)
 	switch {
 	case err != nil:
 		return e.Text
@@ -132,6 +132,9 @@ func (c *Column) words(e *Entry, g *Grid) (string, *refusal) {
 	}
 	if e.Kind == Figure && e.Form == Date {
 		return isoDate(e.Text, g.Is1904), nil
+	}
+	if e.Kind == Figure && e.Form != Clock && e.Shows != AsStored {
+		return "", e.differs(e.Text)
 	}
 	return e.Text, nil
 }
@@ -171,6 +174,14 @@ func (c *Column) slipped(v unit.Value) string {
 	return ""
 }
 
+// storedNumber reads a number as workbooks store it: decimal, with a point. ParseFloat alone takes 2_0 for 20 and 0x1p4 for 16.
+func storedNumber(stored string) (float64, error) {
+	if strings.ContainsAny(stored, "_xXpP") {
+		return 0, strconv.ErrSyntax
+	}
+	return strconv.ParseFloat(stored, 64)
+}
+
 // convert makes a value of a cell, by its kind and its number format.
 func (c *Column) convert(e *Entry, g *Grid, u *unit.Unit, d unit.Decimal) (unit.Value, *refusal) {
 	q := c.Quantity
@@ -178,13 +189,16 @@ func (c *Column) convert(e *Entry, g *Grid, u *unit.Unit, d unit.Decimal) (unit.
 		u = &q.Units[0]
 	}
 	if e.Kind == Text {
+		if e.Shows != AsStored {
+			return unit.Value{}, e.differs(e.Text)
+		}
 		v, m := q.Parse(e.Text, u, d)
 		if m != nil {
 			return v, refused(e.Text, asFound, m.Says, m.Mend)
 		}
 		return v, nil
 	}
-	x, err := strconv.ParseFloat(e.Text, 64)
+	x, err := storedNumber(e.Text)
 	expected := article(q.Name)
 	var worded *unit.Unit // that the number format shows
 	if e.Form >= Worded {
@@ -203,10 +217,14 @@ func (c *Column) convert(e *Entry, g *Grid, u *unit.Unit, d unit.Decimal) (unit.
 		return unit.Value{}, refused(e.Text, isTruth, expected)
 	case err != nil || math.IsNaN(x) || math.IsInf(x, 0):
 		return unit.Value{}, refused(e.Text, notNumber, expected)
+	case e.Shows != AsStored && e.Form != Clock:
+		return unit.Value{}, e.differs(shown(e.Text, x))
 	case e.Form == Date:
 		return unit.Value{}, refused(isoDate(e.Text, g.Is1904), isDate, expected)
 	case e.Form == Clock && q != &unit.Duration:
 		return unit.Value{}, refused(clockWords(x), isTime, expected)
+	case e.Form == Clock && e.Shows != AsStored:
+		return unit.Value{}, e.differs(clockWords(x))
 	case e.Form == Clock:
 		s := math.Round(x*86400*1000) / 1000
 		return unit.Value{Computed: s, Typed: clockWords(x)}, nil

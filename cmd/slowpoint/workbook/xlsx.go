@@ -12,6 +12,8 @@ import (
 	"strconv"
 	"strings"
 	"time"
+	"unicode"
+	"unicode/utf8"
 
 	"slowpoint/model/cell"
 )
@@ -24,9 +26,11 @@ type book struct {
 	sheets  []bookSheet
 	is1904  bool
 	strings []string
-	forms   []Form   // of each cell style
+	formats []numberFormat // of each cell style; nil where every number has the form in forms and is shown as it is stored
+	forms   []Form
 	words   []string // of forms from worded on
 	struck  struck
+	raised  map[int]bool // shared texts with raised or lowered digits that are no unit's; nil if there are none
 }
 
 // struck is what is struck through; both are nil in a plan without such a thing.
@@ -46,7 +50,7 @@ func readWorkbook(data []byte) ([]*Grid, error) {
 	if err != nil {
 		return nil, err
 	}
-	m := &meter{left: mostBytes}
+	m := &meter{left: mostBytes, spare: mostElements}
 	byName := map[string]*zip.File{}
 	for _, f := range z.File {
 		byName[strings.ToLower(f.Name)] = f
@@ -63,7 +67,9 @@ func readWorkbook(data []byte) ([]*Grid, error) {
 			return nil, damaged(s.part, fmt.Errorf("it is missing, and the sheet %s is in it", s.name))
 		}
 		g := &Grid{Name: tidy(s.name), Hidden: s.hidden, HiddenCols: map[int]bool{}, words: b.words, Is1904: b.is1904}
-		if err := m.part(f, func(r io.Reader) error { return b.sheet(r, g, &cells) }); err != nil {
+		if err := m.part(f, func(r metered) error { return b.sheet(r, g, &cells) }); err == errMerged {
+			return nil, fmt.Errorf("the sheet %s %w", g.Name, err)
+		} else if err != nil {
 			return nil, err
 		}
 		done[f] = true
@@ -74,7 +80,7 @@ func readWorkbook(data []byte) ([]*Grid, error) {
 			continue
 		}
 		n := strings.ToLower(f.Name)
-		var use func(io.Reader) error
+		var use func(metered) error
 		if strings.HasSuffix(n, ".xml") && (strings.HasPrefix(n, "xl/worksheets/") || n == "[content_types].xml") || strings.HasSuffix(n, ".rels") {
 			use = wellFormed
 		}
@@ -101,12 +107,12 @@ func readBook(byName map[string]*zip.File, m *meter) (*book, map[*zip.File]bool,
 	parts := linksOf(home, byName, m)
 	type raw struct{ name, id, state string }
 	var sheets []raw
-	err := m.part(f, func(r io.Reader) error {
-		return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
+	err := m.part(f, func(r metered) error {
+		return elements(r, func(_ *walker, e xml.StartElement) error {
 			switch e.Name.Local {
 			case "workbookPr":
 				v := attr(e, "date1904")
-				b.is1904 = v == "1" || v == "true"
+				b.is1904 = isTrue(v)
 			case "sheet":
 				sheets = append(sheets, raw{attr(e, "name"), attr(e, "id"), attr(e, "state")})
 			}
@@ -137,7 +143,7 @@ func readBook(byName map[string]*zip.File, m *meter) (*book, map[*zip.File]bool,
 func (b *book) readShared(parts map[string]link, byName map[string]*zip.File, m *meter, done map[*zip.File]bool) error {
 	for _, l := range parts {
 		f := byName[strings.ToLower(l.part)]
-		var use func(io.Reader) error
+		var use func(metered) error
 		switch {
 		case strings.HasSuffix(l.kind, "/sharedStrings"):
 			use = b.readStrings
@@ -167,8 +173,8 @@ func linksOf(part string, byName map[string]*zip.File, m *meter) map[string]link
 	if f == nil {
 		return out
 	}
-	m.part(f, func(r io.Reader) error {
-		return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
+	m.part(f, func(r metered) error {
+		return elements(r, func(_ *walker, e xml.StartElement) error {
 			if e.Name.Local == "Relationship" {
 				out[attr(e, "Id")] = link{attr(e, "Type"), target(part, attr(e, "Target"))}
 			}
@@ -198,20 +204,32 @@ func attr(e xml.StartElement, name string) string {
 	return ""
 }
 
+// What a cell, with its formula, value and text, and a shared text in two or three writings hold; more comes out of what is spare.
+const (
+	inCell = 4
+	inText = 20
+)
+
 // readStrings reads the shared texts; runs of one text are joined, its reading aids (rPh) left out.
-func (b *book) readStrings(r io.Reader) error {
-	return elements(r, func(d *xml.Decoder, e xml.StartElement) error {
+func (b *book) readStrings(r metered) error {
+	return elements(r, func(d *walker, e xml.StartElement) error {
 		if e.Name.Local != "si" {
 			return nil
 		}
-		s, struck, err := richText(d)
+		d.m.spare += inText
+		t, err := richText(d)
 		if err != nil {
 			return err
 		}
-		if struck {
+		if t.struck {
 			b.struck.texts = marked(b.struck.texts, len(b.strings))
 		}
-		b.strings = append(b.strings, tidy(s))
+		if t.raised {
+			b.raised = marked(b.raised, len(b.strings))
+		}
+		if b.strings = append(b.strings, tidy(t.joined)); len(b.strings) > mostCells {
+			return errTooMany
+		}
 		return nil
 	}, nil)
 }
@@ -234,25 +252,40 @@ func strikes(e xml.StartElement) bool {
 	return v != "0" && v != "false"
 }
 
-// richText reads up to the end of the element that was just opened, joins its texts, and tells whether one of them is struck through.
-func richText(d *xml.Decoder) (joined string, struck bool, err error) {
+// raises tells whether an element of a font raises or lowers its text.
+func raises(e xml.StartElement) bool {
+	v := attr(e, "val")
+	return e.Name.Local == "vertAlign" && v != "" && v != "baseline"
+}
+
+// rich is the runs of a text, joined.
+type rich struct {
+	joined string
+	struck bool // one of them is struck through
+	raised bool // one of them holds raised or lowered digits that do not belong to a letter before them, as the 2 of m² does
+}
+
+// richText reads up to the end of the element that was just opened.
+func richText(d *walker) (r rich, err error) {
 	var s strings.Builder
-	lined := false // the run that is read
+	lined, up := false, false // the run that is read
+	before := ' '             // the letter or sign before it
 	for depth, inT := 1, false; depth > 0; {
 		t, err := d.Token()
 		if err != nil {
-			return "", false, midway(err)
+			return rich{}, midway(err)
 		}
 		switch t := t.(type) {
 		case xml.StartElement:
 			if t.Name.Local == "rPh" {
 				if err := d.Skip(); err != nil {
-					return "", false, midway(err)
+					return rich{}, midway(err)
 				}
 				continue
 			}
 			depth++
 			lined = (lined || strikes(t)) && t.Name.Local != "r"
+			up = (up || raises(t)) && t.Name.Local != "r"
 			inT = t.Name.Local == "t"
 		case xml.EndElement:
 			depth--
@@ -260,11 +293,16 @@ func richText(d *xml.Decoder) (joined string, struck bool, err error) {
 		case xml.CharData:
 			if inT {
 				s.Write(t)
-				struck = struck || lined && len(bytes.TrimSpace(t)) > 0
+				r.struck = r.struck || lined && len(bytes.TrimSpace(t)) > 0
+				r.raised = r.raised || up && bytes.ContainsAny(t, "0123456789") && !unicode.IsLetter(before)
+				if len(t) > 0 {
+					before, _ = utf8.DecodeLastRune(t)
+				}
 			}
 		}
 	}
-	return unescape(s.String()), struck, nil
+	r.joined = unescape(s.String())
+	return r, nil
 }
 
 func midway(err error) error {
@@ -294,15 +332,15 @@ func unescape(s string) string {
 }
 
 // readStyles finds what the number format of each cell style makes of a number, and which styles strike through.
-func (b *book) readStyles(r io.Reader) error {
-	custom := map[string]Form{}
+func (b *book) readStyles(r metered) error {
+	custom := map[string]numberFormat{}
 	var lined map[int]bool // fonts that strike through
 	fonts := 0             // begun so far
 	inFonts, inCells := false, false
-	return elements(r, func(_ *xml.Decoder, e xml.StartElement) error {
+	return elements(r, func(_ *walker, e xml.StartElement) error {
 		switch e.Name.Local {
 		case "numFmt":
-			custom[attr(e, "numFmtId")] = b.form(attr(e, "formatCode"))
+			custom[attr(e, "numFmtId")] = b.numberFormat(attr(e, "formatCode"))
 		case "fonts":
 			inFonts = true
 		case "font":
@@ -320,10 +358,16 @@ func (b *book) readStyles(r io.Reader) error {
 				}
 				id := attr(e, "numFmtId")
 				f, ok := custom[id]
-				if !ok {
-					f = builtIn(id)
+				if code := clocks[id]; !ok && code != "" {
+					f = b.numberFormat(code)
+				} else if !ok {
+					f = numberFormat{{form: builtIn(id)}}
 				}
-				b.forms = append(b.forms, f)
+				b.forms = append(b.forms, f[0].form)
+				if f.plain() {
+					f = nil
+				}
+				b.formats = append(b.formats, f)
 			}
 		}
 		return nil
@@ -343,19 +387,21 @@ func builtIn(id string) Form {
 	switch {
 	case n == 9 || n == 10:
 		return Percent
-	case n >= 18 && n <= 21 || n >= 45 && n <= 47:
-		return Clock
 	case n >= 14 && n <= 17 || n == 22 || n >= 27 && n <= 36 || n >= 50 && n <= 58:
 		return Date
 	}
 	return Bare
 }
 
+// clocks are the built-in number formats of times (ECMA-376 part 1, 18.8.30).
+var clocks = map[string]string{"18": "h:mm AM/PM", "19": "h:mm:ss AM/PM", "20": "h:mm", "21": "h:mm:ss", "45": "mm:ss", "46": "[h]:mm:ss", "47": "mm:ss.0"}
+
 // form is formOf, but tells bare formats apart that show words behind the number.
 func (b *book) form(code string) Form {
 	f := formOf(code)
 	words := behind(code)
-	if f != Bare || words == "" || len(b.words) >= 200 {
+	named := strings.ContainsFunc(words, func(c rune) bool { return unicode.IsLetter(c) || strings.ContainsRune("°%\"″", c) }) // and no bracket or stop
+	if f != Bare || !named || len(b.words) >= 200 {
 		return f
 	}
 	for i, w := range b.words {
@@ -442,8 +488,8 @@ func formOf(code string) Form {
 	return Bare
 }
 
-// sheet reads the cells of one sheet. left is how many cells the plan may still have.
-func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
+// sheet reads the cells of one sheet. left is how many cells and empty rows the plan may still have.
+func (b *book) sheet(r metered, g *Grid, left *int) error {
 	row := Row{}
 	col, filled := 0, 0
 	flush := func() {
@@ -453,13 +499,19 @@ func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
 		row = Row{N: row.N}
 	}
 	rooted := false
-	err := elements(r, func(d *xml.Decoder, e xml.StartElement) error {
+	err := elements(r, func(d *walker, e xml.StartElement) error {
 		if !rooted && e.Name.Local != "worksheet" {
 			return errors.New("it is not a sheet")
 		}
 		rooted = true
 		switch e.Name.Local {
 		case "row":
+			if row.N > 0 && col == 0 { // an empty row takes as long as a cell
+				if *left--; *left < 0 {
+					return errTooMany
+				}
+			}
+			d.m.spare++
 			flush()
 			next, err := startRow(e, row.N)
 			if err != nil {
@@ -478,6 +530,7 @@ func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
 			if *left--; *left < 0 {
 				return errTooMany
 			}
+			d.m.spare += inCell
 			c, err := b.cell(d, e)
 			if err != nil {
 				return err
@@ -496,14 +549,16 @@ func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
 				row.Cells = append(row.Cells, c)
 			}
 		case "sheetProtection":
-			v := attr(e, "sheet")
-			g.Protected = v == "1" || v == "true"
+			g.Protected = isTrue(attr(e, "sheet"))
 		case "mergeCell":
+			if len(g.Merged) == mostMerged {
+				return errMerged
+			}
 			if m, ok := parseBlock(attr(e, "ref")); ok {
 				g.Merged = append(g.Merged, m)
 			}
 		case "col":
-			if h := attr(e, "hidden"); h == "1" || h == "true" {
+			if isTrue(attr(e, "hidden")) || smaller(attr(e, "width"), leastWidth) {
 				from, _ := strconv.Atoi(attr(e, "min"))
 				to, _ := strconv.Atoi(attr(e, "max"))
 				for i := max(from, 1); i <= min(to, mostColumns); i++ {
@@ -516,6 +571,20 @@ func (b *book) sheet(r io.Reader, g *Grid, left *int) error {
 	flush()
 	return err
 }
+
+// What is lower or narrower is a line at most, and nobody sees what is in it.
+const (
+	leastHeight = 1   // points
+	leastWidth  = 0.2 // characters; a column of one pixel has 0.14 (common practice, no source)
+)
+
+// smaller tells whether a size is given and less than least.
+func smaller(size string, least float64) bool {
+	x, err := storedNumber(size)
+	return err == nil && x < least
+}
+
+func isTrue(v string) bool { return v == "1" || v == "true" }
 
 // startRow reads what a row says of itself, after the row before.
 func startRow(e xml.StartElement, before int) (Row, error) {
@@ -533,10 +602,7 @@ func startRow(e xml.StartElement, before int) (Row, error) {
 	if n > LastRow {
 		return Row{}, fmt.Errorf("row %d does not exist in a spreadsheet", n)
 	}
-	hidden := attr(e, "hidden") == "1" || attr(e, "hidden") == "true"
-	if h, err := strconv.ParseFloat(attr(e, "ht"), 64); err == nil && h == 0 && attr(e, "customHeight") != "" {
-		hidden = true // a row of no height
-	}
+	hidden := isTrue(attr(e, "hidden")) || smaller(attr(e, "ht"), leastHeight)
 	return Row{N: n, Hidden: hidden}, nil
 }
 
@@ -583,11 +649,11 @@ func parseBlock(ref string) (Block, bool) {
 type stored struct {
 	kind, value, inline   string
 	formula, hasV, struck bool
-	linked                bool
+	linked, raised        bool
 }
 
 // cell reads one cell up to its end.
-func (b *book) cell(d *xml.Decoder, e xml.StartElement) (Entry, error) {
+func (b *book) cell(d *walker, e xml.StartElement) (Entry, error) {
 	in := stored{kind: attr(e, "t")}
 	for depth := 1; depth > 0; {
 		t, err := d.Token()
@@ -602,7 +668,9 @@ func (b *book) cell(d *xml.Decoder, e xml.StartElement) (Entry, error) {
 				f, err = charData(d)
 				in.formula, in.linked = true, otherBook(f)
 			case "is":
-				in.inline, in.struck, err = richText(d)
+				var t rich
+				t, err = richText(d)
+				in.inline, in.struck, in.raised = t.joined, t.struck, t.raised
 			case "v":
 				in.value, err = charData(d)
 				in.hasV = true
@@ -641,6 +709,7 @@ func (b *book) meaning(in stored, style string) (Entry, error) {
 		}
 		c.Kind, c.Text = Text, b.strings[n]
 		c.Struck = c.Struck || b.struck.texts[n]
+		in.raised = b.raised[n]
 	case in.kind == "inlineStr":
 		c.Kind, c.Text = Text, tidy(in.inline)
 	case in.formula && (!in.hasV || in.value == "" && in.kind != "str"): // of text, <v></v> is the stored result "", a missing <v> is none
@@ -650,7 +719,7 @@ func (b *book) meaning(in stored, style string) (Entry, error) {
 	case in.kind == "str":
 		c.Kind, c.Text = Text, tidy(unescape(in.value))
 	case in.kind == "b":
-		c.Kind, c.Text = Truth, map[bool]string{true: "TRUE", false: "FALSE"}[in.value == "1" || in.value == "true"]
+		c.Kind, c.Text = Truth, map[bool]string{true: "TRUE", false: "FALSE"}[isTrue(in.value)]
 	case in.kind == "e":
 		c.Kind, c.Text = Broken, in.value
 	case in.kind == "d":
@@ -659,6 +728,11 @@ func (b *book) meaning(in stored, style string) (Entry, error) {
 		c.Kind, c.Text = Figure, strings.TrimSpace(in.value)
 		if n, err := strconv.Atoi(style); err == nil && n >= 0 && n < len(b.forms) {
 			c.Form = b.forms[n]
+			if f := b.formats[n]; f != nil {
+				if x, err := storedNumber(c.Text); err == nil {
+					c.Form, c.Shows = f.of(x)
+				}
+			}
 		}
 	}
 	switch {
@@ -666,6 +740,8 @@ func (b *book) meaning(in stored, style string) (Entry, error) {
 		return Entry{}, nil
 	case c.Kind == Text && failed(c.Text):
 		c.Kind = Broken
+	case c.Kind == Text && in.raised:
+		c.Shows = Raised
 	}
 	return c, nil
 }
@@ -689,8 +765,8 @@ func otherBook(formula string) bool {
 }
 
 // charData reads the text of an element up to its end.
-func charData(d *xml.Decoder) (string, error) {
-	s := ""
+func charData(d *walker) (string, error) {
+	var s strings.Builder
 	for {
 		t, err := d.Token()
 		if err != nil {
@@ -698,20 +774,20 @@ func charData(d *xml.Decoder) (string, error) {
 		}
 		switch t := t.(type) {
 		case xml.CharData:
-			s += string(t)
+			s.Write(t)
 		case xml.StartElement:
 			if err := d.Skip(); err != nil {
 				return "", midway(err)
 			}
 		case xml.EndElement:
-			return s, nil
+			return s.String(), nil
 		}
 	}
 }
 
 // isoDate prints a stored date: days from the end of 1899 (with the 29 February 1900 that never was) or from 1904.
 func isoDate(stored string, is1904 bool) string {
-	x, err := strconv.ParseFloat(stored, 64)
+	x, err := storedNumber(stored)
 	if err != nil || math.IsNaN(x) || x < 0 || x > 2958466 {
 		return stored
 	}
