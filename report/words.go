@@ -463,6 +463,10 @@ var words = map[string]string{
 
 	// overview of the plan
 	"summary title":           "Overview of the plan",
+	"summary title part":      "Overview of a part of the plan",
+	"left out one":            "1 more product of the plan was left out by --only, and nothing is said of it here: %s.",
+	"left out":                "%d more products of the plan were left out by --only, and nothing is said of them here: %s.",
+	"left out more":           " and %d more",
 	"summary sentence":        "%s: %s.",
 	"products calculated":     "%d products calculated",
 	"products calculated one": "1 product calculated",
