@@ -191,11 +191,28 @@ func headOf(plan *workbook.Plan, o *checkOptions) (*report.Head, error) {
 	return h, nil
 }
 
-// filesOf gives each product of the whole plan the file name of its report, so that --only names a report as a run of everything does.
+// filesOf gives each product of the whole plan the file name of its report, those that cannot be calculated too: so --only, and a product
+// with a mistake, name the reports of the others as a run of everything does, and what is left of an earlier run is known.
 func filesOf(plan *workbook.Plan) map[string]string {
-	products := make([]string, len(plan.Products))
-	for i := range products {
-		products[i] = plan.Products[i].Name
+	type named struct {
+		row  int
+		name string
+	}
+	var all []named
+	for i := range plan.Products {
+		all = append(all, named{plan.Products[i].At.Row, plan.Products[i].Name})
+	}
+	for _, n := range plan.NotCalculated {
+		all = append(all, named{n.At.Row, n.Product})
+	}
+	slices.SortStableFunc(all, func(a, b named) int { return a.row - b.row })
+	var products []string
+	seen := map[string]bool{"": true}
+	for _, n := range all {
+		if !seen[n.name] { // a name that comes twice is a mistake of the second row
+			products = append(products, n.name)
+		}
+		seen[n.name] = true
 	}
 	out := make(map[string]string, len(products))
 	for i, file := range fileNames(products) {

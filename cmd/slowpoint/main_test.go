@@ -541,3 +541,30 @@ func TestFilesOfAnEarlierRunAreTold(t *testing.T) {
 		t.Errorf("without PDFs: %s", got)
 	}
 }
+
+// The report of a product that was calculated once, and now has a mistake, is told to be of an earlier run; the others keep their names.
+func TestReportOfARefusedProductIsTold(t *testing.T) {
+	dir := filepath.Join(t.TempDir(), "plan")
+	check := func(thickness string) string {
+		writePlan(t, dir, map[string]string{
+			"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\na/b,A,slab," + thickness + ",Mash,60\na_b,A,slab,37,Mash,60\n",
+			"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Freezing point (°C),Source\nMash,0.52,1040,3600,no,-1,invented\n",
+			"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\nA,chill,cool,90,film,3,25\n",
+			"Limits":   "Limit,Rule,Stage,Applies to,To (°C),Code,Clause,Edition\ncold,by the end,cool,all,30,invented,1,1\n",
+		})
+		var told, errs bytes.Buffer
+		run([]string{"check", dir, "--date", "2026-01-31"}, nil, &told, &errs)
+		return told.String()
+	}
+	check("21")
+	first, err := os.ReadFile(filepath.Join(dir+"-results", "a_b.pdf"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if told := check("-20"); !strings.Contains(told, "Left from an earlier run, not of this one: a_b.pdf\n") {
+		t.Errorf("the screen:\n%s", told)
+	}
+	if now, err := os.ReadFile(filepath.Join(dir+"-results", "a_b.pdf")); err != nil || !bytes.Equal(now, first) {
+		t.Errorf("the old report of a/b is now that of another product: %v", err)
+	}
+}
