@@ -66,6 +66,14 @@ func (l *Limit) Faults() []Fault {
 	case k == HeatWithin && l.FromC != nil && l.ToC != nil && !(*l.ToC > *l.FromC):
 		add("To", "To must be warmer than From: the food is heated from From up to To", "swap From and To")
 	}
+	if c := l.Clock.AtC; c != nil && l.ToC != nil && l.FromC == nil {
+		switch { // By the end may well ask that the food has not risen again since
+		case k == CoolWithin && !(*l.ToC < *c):
+			add("Clock starts", "the temperature that is crossed must be warmer than To: the food cools from there down to To", "look at its unit, °C or °F")
+		case k == HeatWithin && !(*l.ToC > *c):
+			add("Clock starts", "the temperature that is crossed must be colder than To: the food is heated from there up to To", "look at its unit, °C or °F")
+		}
+	}
 	l.operatorFaults(add)
 	if k == CoolWithin || k == HeatWithin || k == ByTheEnd {
 		l.clockFaults(add)
