@@ -21,6 +21,11 @@ func (p *Product) beside() []string {
 			s = append(s, says)
 		}
 	}
+	for _, f := range p.worstFirst() {
+		if f.StillWarm != "" && f.Limit != nil {
+			s = append(s, say("beside still warm", f.Limit.Name, f.StillWarm))
+		}
+	}
 	s = append(s, p.untils()...)
 	if decides == nil { // why nothing was judged says the same
 		return s

@@ -116,6 +116,7 @@ var words = map[string]string{
 
 	// cautions
 	"caution thin margin":                               "Thin margin: %s leaves less than %s or less than a tenth of the time. Small differences in size, load or surroundings can use it up.",
+	"caution cooling limit did not apply":               "The food was warm enough for a limit on cooling, which did not apply because nothing in the process chills it after that: %s. If the food is to be cooled, its steps lack the chill.",
 	"caution resolution coarser than margin":            "The error estimate of %s is as large as the margin of: %s.",
 	"caution limit without citation":                    "No full citation (code, clause, edition) was entered for: %s. Without it nobody can check whether the limit is the right one.",
 	"caution step did not reach its temperature":        "The temperature that should end the step was not reached within its longest duration: %s. The findings rest on the longest duration.",
@@ -161,6 +162,7 @@ var words = map[string]string{
 	"headline cannot tell":  "\"%s\" cannot be told: %s",
 	"headline plain":        "%s: %s. %s",
 	"beside carry-over":     "\"%s\": %s",
+	"beside still warm":     "\"%s\" did not apply, though %s.",
 	"beside until late":     "The step %s did not reach its Until within its longest duration (%s).",
 	"beside until at once":  "The step %s ended at once: its Until was already reached when it began.",
 	"beside idle":           "%s; %d did not apply: %s.",

@@ -144,6 +144,7 @@ type Finding struct {
 	Notes       []string   // e.g. rose above From again at 3 h 05 min
 	Cautions    []string   // keys of the report's cautions: "slow come-up lethality", "lethality without floor", "below 60 °C table row", …
 	CarryOver   string     // that the limit is met only by what the food gets after its heating, in a sentence with numbers; "" elsewhere
+	StillWarm   string     // of a limit on cooling that did not apply though the food was warm enough: how warm, in a clause; "" elsewhere
 	Run         string     // the further run that this is the finding of; "" for the usual one
 }
 
