@@ -21,6 +21,7 @@ func (p *Product) beside() []string {
 			s = append(s, says)
 		}
 	}
+	s = append(s, p.judgedInPart()...)
 	for _, f := range p.worstFirst() {
 		if f.StillWarm != "" && f.Limit != nil {
 			s = append(s, say("beside still warm", f.Limit.Name, f.StillWarm))

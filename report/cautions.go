@@ -22,6 +22,7 @@ type trigger struct {
 var triggers = []trigger{
 	{"thin margin", thinMargin},
 	{"cooling limit did not apply", stillWarm},
+	{"judged in part", inPart},
 	{"resolution coarser than margin", coarse},
 	{"limit without citation", uncited},
 	{"step did not reach its temperature", stepsWhere(func(sp *model.Span) bool { return sp.Reached != nil && !*sp.Reached })},

@@ -238,7 +238,11 @@ func (x *sheet) slowestSentence() string {
 	if hist.Recorded {
 		key = "chart sentence record"
 	}
-	out := say(key, x.decides.placeName, strings.Join(s, "; "))
+	args := []any{x.decides.placeName, strings.Join(s, "; ")}
+	if key == "chart sentence" || key == "chart sentence "+rules.LowConductivity {
+		args = append([]any{x.decides.called()}, args...)
+	}
+	out := say(key, args...)
 	var broken []string
 	for i, p := range newTimeAxis(hist, x.decides.part()).pieces {
 		if p.broken {
@@ -760,13 +764,13 @@ func (x *sheet) predicted() {
 		d.y += 59
 		d.text(x.profileSentence(times))
 	}
-	d.heading(say("sketch title"), 1, 52)
-	d.sketch(&x.p.Product, x.decides.place, x.decides.placeName, 42)
+	d.heading(say("sketch title", x.decides.called()), 1, 52)
+	d.sketch(&x.p.Product, x.decides.place, say("sketch place", x.decides.called(), x.decides.placeName), 42)
 	if x.p.Product.Shape == model.Stirred {
 		d.text(say("sketch sentence stirred", x.sizes()))
 		return
 	}
-	d.text(say("sketch sentence", x.p.Product.Shape.Name, x.sizes(), x.decides.placeName))
+	d.text(say("sketch sentence", x.p.Product.Shape.Name, x.sizes(), x.decides.called(), x.decides.placeName))
 }
 
 // levelsSentence names the limit lines of the chart in both units.

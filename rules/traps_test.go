@@ -236,6 +236,9 @@ func TestEveryPoint(t *testing.T) {
 	if got := one(t, l, h); got.Verdict != Met || got.PlaceName != "centre" || *got.Value != 20 {
 		t.Errorf("%v at %s: %v", got.Verdict, got.PlaceName, *got.Value)
 	}
+	if slow := one(t, Limit{Kind: CoolWithin, ToC: c(25), TimeS: min_(60), Clock: Clock{Start: model.Cook}, Where: Where{"surface"}}, h); !strings.HasPrefix(slow.Why, "The surface took ") {
+		t.Errorf("the surface alone was judged: %s", slow.Why) // not "The slowest place (surface)"
+	}
 	// the reported margin considers all places: the surface has 21 min but is colder elsewhere
 	l = Limit{Kind: StayAbove, FromC: c(10)}
 	h = records(t, "hold hot 0-60", trace(t, "centre", 0, "0:60 60:50"), trace(t, "surface", 30, "0:60 60:40"))

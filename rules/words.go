@@ -98,8 +98,11 @@ var words = map[string]string{
 	"stated no":         "Answered: {answer}.",
 	"stated text":       "Answered: {answer}; only yes, yes with a comma and a remark that takes nothing back, or no decides, so it cannot be told.",
 
-	"who every":  "The least favourable place ({place})",
-	"who slow":   "The slowest place ({place})",
+	"who every":         "The least favourable place ({place})",
+	"who slow":          "The slowest place ({place})",
+	"who surface slow":  "The slowest place of the surface ({place})",
+	"who surface every": "The least favourable place of the surface ({place})",
+
 	"who named":  "The {place}",
 	"who medium": "The medium",
 
@@ -289,6 +292,10 @@ func (v *view) sentence(f *Finding, o outcome, tail string) string {
 	case same(name, "medium"):
 		h["who"] = say("who medium", nil)
 	case name != "" && !same(name, "every point") && !same(name, "surface"):
+		h["who"] = say("who named", holes{"place": f.PlaceName})
+	case same(name, "surface") && f.PlaceName != "surface":
+		h["who"] = say(map[bool]string{true: "who surface slow", false: "who surface every"}[o.slow], holes{"place": f.PlaceName})
+	case same(name, "surface"):
 		h["who"] = say("who named", holes{"place": f.PlaceName})
 	case o.slow:
 		h["who"] = say("who slow", holes{"place": f.PlaceName})
