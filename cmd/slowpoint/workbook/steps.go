@@ -3,8 +3,10 @@ package workbook
 import (
 	"strconv"
 	"strings"
+	"unicode"
 
 	"slowpoint/model"
+	"slowpoint/model/cell"
 )
 
 // process is the chain of steps that products share.
@@ -160,11 +162,43 @@ func (r *reader) readStep(l *Line) *step {
 	s.UntilC = l.Number("Until slowest point reaches")
 	s.course = r.exposure(l, &s.Exposure, s.DurationS)
 	s.Equipment, s.Load, s.Note = l.Words("Equipment"), l.Words("Load"), l.Words("Note")
+	l.quick(&s.Exposure, s)
 	if s.Equipment != "" {
 		l.refused("Equipment", s.Equipment)
 	}
 	s.AltitudeM = r.plan.AltitudeM
 	return s
+}
+
+// mostOfAir is the highest film coefficient that air of a chiller, a freezer or a room gives, W/(m²·K): published totals for blown air end
+// at 48, see publishedFilms; the rest is room (common practice, no source).
+const mostOfAir = 60
+
+// quicker are beginnings of words for what takes heat faster than air does.
+var quicker = []string{"water", "bath", "ice", "icy", "slurry", "spray", "plate", "brine", "immers", "sink", "shower", "drench", "hydro", "jacket", "contact",
+	"glycol", "nitrogen", "cryo", "co2", "imping"}
+
+// quick warns of a film coefficient that air does not reach, where food cools or stands and nothing speaks of water, plates or sprays.
+func (l *Line) quick(x *model.Exposure, s *step) {
+	inAir := x.Surface == model.StillAir || x.Surface == model.MovingAir
+	if x.FilmW == nil || *x.FilmW <= mostOfAir || usualFilm.outside(*x.FilmW) || s.Stage == nil || x.Surface != model.Film && !inAir {
+		return
+	}
+	switch s.Stage {
+	case model.Cool, model.Rest, model.Store, model.HoldCold, model.Freeze:
+	default:
+		return
+	}
+	said := Key(s.Name + " " + s.Equipment + " " + s.Note)
+	for _, w := range strings.FieldsFunc(said, func(c rune) bool { return !unicode.IsLetter(c) && !unicode.IsDigit(c) }) {
+		for _, q := range quicker {
+			if !inAir && strings.HasPrefix(w, q) && w != "plated" {
+				return
+			}
+		}
+	}
+	c := l.t.sheet.Column("Film coefficient")
+	l.Remark(cell.Warning, "Film coefficient", l.Entry("Film coefficient").Text, filmOfWater, c.shown(*x.FilmW), s.Stage.Name, strconv.Itoa(mostOfAir))
 }
 
 // stage reads the word of one stage.
