@@ -171,6 +171,8 @@ var words = map[string]string{
 	"judged at surface":     "%s was judged at the surface only: that says nothing of the inside.",
 	"judged at point":       "%s was judged at the point %s only: that says nothing of the rest of the food.",
 	"beside still warm":     "\"%s\" did not apply, though %s.",
+	"one of":                "\"%s\" is one of %d limits of which any will do (group %s); the others: %s.",
+	"one of other":          "\"%s\" %s",
 	"beside until late":     "The step %s did not reach its Until within its longest duration (%s).",
 	"beside until at once":  "The step %s ended at once: its Until was already reached when it began.",
 	"beside idle":           "%s; %d did not apply: %s.",

@@ -154,6 +154,13 @@ type GroupFinding struct {
 	AnyOf     bool
 	Verdict   Verdict
 	DecidedBy string // limit or group name
+	Members   []Member
+}
+
+// Member is a limit or a group within a group, with its own verdict.
+type Member struct {
+	Name    string
+	Verdict Verdict
 }
 
 // The further runs of a product, besides the usual one.

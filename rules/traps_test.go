@@ -2,6 +2,7 @@ package rules
 
 import (
 	"math"
+	"slices"
 	"strings"
 	"testing"
 
@@ -227,6 +228,19 @@ func TestInstants(t *testing.T) {
 	closeTo(t, "first phase done", frozen.ClockStartS, 50*60, 1e-6)
 	closeTo(t, "second phase over", frozen.ClockEndS, 150*60, 1e-6)
 	closeTo(t, "second phase", frozen.Value, 100, 1e-9)
+}
+
+// TestGroupTellsItsMembers: which limits a group has, with their own verdicts, whichever decides.
+func TestGroupTellsItsMembers(t *testing.T) {
+	h := record(t, "cool 0-200", "0:90 200:5")
+	all := Applies{All: true}
+	j := Judge([]Limit{
+		{Name: "fast", Kind: CoolWithin, Applies: all, FromC: c(60), ToC: c(20), TimeS: min_(30), Clock: crossing, Group: "g"},
+		{Name: "cold", Kind: ByTheEnd, Applies: all, ToC: c(8), Group: "g"},
+		{Name: "hot", Kind: StayAbove, Applies: all, Stages: st(model.HoldHot), FromC: c(63), Group: "g"}}, []Group{{Name: "g", AnyOf: true}}, Subject{History: h})
+	if want := []Member{{"fast", NotMet}, {"cold", Met}, {"hot", NotApplicable}}; len(j.Groups) != 1 || !slices.Equal(j.Groups[0].Members, want) || j.Groups[0].DecidedBy != "cold" {
+		t.Errorf("%+v, want %v", j.Groups, want)
+	}
 }
 
 // TestEveryPoint judges each place by its own course: the coldest-anywhere envelope would miss the hold here.
