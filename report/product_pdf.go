@@ -927,38 +927,6 @@ func (x *sheet) extremePlace(i int, c []float64, at []model.Place) string {
 	return x.p.Product.Where(at[i])
 }
 
-// moves says in words how the coldest and the hottest place move.
-func (x *sheet) moves() string {
-	s, shape := &x.p.Samples, x.p.Product.Shape
-	if len(s.ColdestAt) == 0 || shape == model.Stirred {
-		return say("moves stirred")
-	}
-	var out []string
-	for _, sp := range x.p.History.Spans {
-		at, c, what := s.HottestAt, s.Hottest, say("hottest")
-		if sp.Step.Stage != nil && sp.Step.Stage.Heats {
-			at, c, what = s.ColdestAt, s.Coldest, say("coldest")
-		}
-		first, last := "", ""
-		for i, t := range s.TimesS {
-			if t > sp.StartS && t <= sp.EndS && i < len(at) && i < len(c) {
-				last = x.extremePlace(i, c, at)
-				if first == "" {
-					first = last
-				}
-			}
-		}
-		switch {
-		case first == "":
-		case first == last:
-			out = append(out, say("moves not", sp.Step.Name, what, first))
-		default:
-			out = append(out, say("moves", sp.Step.Name, what, first, last))
-		}
-	}
-	return say("moves sentence", strings.Join(out, "; "), x.decides.placeName)
-}
-
 // profileSentence gives surface and middle at each time of the profile.
 func (x *sheet) profileSentence(times []float64) string {
 	hist := x.decides.history

@@ -94,6 +94,7 @@ type Product struct {
 	Samples                                     model.Samples // every EveryS and at each change of step
 	Judgement                                   rules.Judgement
 	From                                        map[cell.Ref]string // where the cells of the findings come from, as that of Readings; nil if nothing is known
+	moved                                       string              // how the slowest place moves, once it was asked for
 	Lever                                       string              // the biggest lever in one sentence, for the page of the operator; "" if none was looked for
 }
 

@@ -298,6 +298,7 @@ var words = map[string]string{
 	"moves stirred":             "The content is mixed throughout: all places have the same temperature.",
 	"moves sentence":            "%s. The place that decides the tightest limit: %s.",
 	"moves not":                 "In %s the %s place stays at: %s",
+	"moves via":                 "In %s the %s place moves from: %s, by way of: %s, to: %s",
 	"moves":                     "In %s the %s place moves from: %s, to: %s",
 	"coldest":                   "coldest",
 	"hottest":                   "hottest",
