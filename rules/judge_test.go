@@ -232,6 +232,14 @@ func TestWords(t *testing.T) {
 			"The slowest place (centre) took 120.1 min from 130 °F to 70 °F, and 2 h is allowed."},
 		{"less than", Limit{Kind: Band, FromC: c(5), ToC: c(60), TimeS: min_(240), Counting: Total, CompareTime: LessThan}, record(t, "store 0-300", "0:20 240:20 240.001:3 300:3"), "The least favourable place (centre) was between 5 °C and 60 °C for 240.1 min, and less than 240 min is allowed."},
 		{"cold, rounded up", Limit{Kind: StayBelow, ToC: c(8)}, record(t, "store 0-60", "0:5 60:8.01"), "The least favourable place (centre) rose to 8.1 °C, and at most 8 °C must be kept."},
+		{"it only fell", Limit{Kind: StayBelow, ToC: f(135), Typed: map[string]string{"To": "135 °F"}}, record(t, "cool 0-60", "0:61.1 60:20"),
+			"The least favourable place (centre) was at 142 °F as the stage began and never warmer, and at most 135 °F must be kept."},
+		{"it only rose", Limit{Kind: StayAbove, FromC: c(63)}, record(t, "hold hot 0-60", "0:61.1 60:70"),
+			"The least favourable place (centre) was at 61.1 °C as the stage began and never colder, and at least 63 °C must be kept."},
+		{"a clock form", Limit{Kind: CoolWithin, FromC: c(60), ToC: c(20), TimeS: c(7200), Clock: crossing, Typed: map[string]string{"Time": "2:00:00 h:mm:ss"}}, record(t, "cook 0-60, cool 60-400", "0:5 60:90 150:0 400:0"),
+			"The slowest place (centre) took 40 min from 60 °C to 20 °C, and 2:00:00 (h:mm:ss) is allowed."},
+		{"a difference", Limit{Kind: Falling, Stages: st(model.Cool), AllowanceK: c(0), Typed: map[string]string{"Allowance": "0 °F difference"}}, record(t, "cool 0-60", "0:60 30:50 40:51 60:20"),
+			"The least favourable place (centre) rose by 1.8 °F, and 0 °F is allowed."},
 		{"hot, rounded down", Limit{Kind: StayAbove, FromC: c(63)}, record(t, "hold hot 0-60", "0:70 60:62.99"), "The least favourable place (centre) fell to 62.9 °C, and at least 63 °C must be kept."},
 	} {
 		if got := one(t, x.l, x.h).Why; got != x.want {

@@ -71,6 +71,8 @@ var words = map[string]string{
 	"band again":        "{who} was between {from} and {to} more than once ({count} periods){in}, and the limit allows one only.",
 	"stay above":        "{who} fell to {value}, and {level} must be kept.",
 	"stay below":        "{who} rose to {value}, and {level} must be kept.",
+	"stay above began":  "{who} was at {value} as the stage began and never colder, and {level} must be kept.",
+	"stay below began":  "{who} was at {value} as the stage began and never warmer, and {level} must be kept.",
 	"out above":         "{who} was below {bare} for {value}{in}, and {time} is allowed.",
 	"out below":         "{who} was above {bare} for {value}{in}, and {time} is allowed.",
 	"out again":         "{who} was beyond {bare} more than once ({count} periods){in}, and the limit allows one only.",
@@ -162,7 +164,7 @@ func lasting(s float64, up int) string {
 // inF tells whether the limit's own temperatures, or those of its table, were typed in °F; its sentences then speak °F.
 func (l *Limit) inF() bool {
 	for _, column := range []string{"From", "To", "Reference temperature", "Allowance", "Clock starts"} {
-		if t := strings.TrimSpace(l.Typed[column]); strings.Contains(t, "°") {
+		if t := l.AsTyped(column); strings.Contains(t, "°") {
 			return strings.HasSuffix(t, "F")
 		}
 	}
@@ -209,10 +211,20 @@ func clockTime(s float64) string {
 
 // figure is a number of the limit as typed, or as the program holds it.
 func (l *Limit) figure(column, held string) string {
-	if t := l.Typed[column]; t != "" {
+	if t := l.AsTyped(column); t != "" {
 		return t
 	}
 	return held
+}
+
+// AsTyped is a number of the limit as it was typed, in the form that it takes in a sentence: the form of a clock in brackets, a difference
+// without the word. "" where nothing was typed.
+func (l *Limit) AsTyped(column string) string {
+	t := strings.TrimSuffix(strings.TrimSpace(l.Typed[column]), " difference")
+	if at := strings.LastIndex(t, " "); at > 0 && strings.Contains(t[at:], ":") && !strings.ContainsAny(t[at:], "0123456789") {
+		return t[:at] + " (" + t[at+1:] + ")"
+	}
+	return t
 }
 
 // exactly writes a limit's own number without rounding.
