@@ -83,6 +83,14 @@ type KnownAnswer struct {
 	Steps         []model.Step // its surroundings
 }
 
+// Amount writes a number of the case with its unit; a pure number has none.
+func (k *KnownAnswer) Amount(number string) string {
+	if k.Unit == "-" {
+		return number
+	}
+	return number + " " + k.Unit
+}
+
 // Product is one product with everything that its documents show.
 type Product struct {
 	Product                                     model.Product

@@ -97,7 +97,7 @@ var textWords = map[string]string{
 	"because":        " (%s)",
 	"known":          "Known-answer cases solved by this program on this machine",
 	"known none":     "None were solved in this run.",
-	"known one":      "%s: expected %s, got %s, allowance %s %s: %s. Source: %s",
+	"known one":      "%s: expected %s, got %s, allowance %s: %s. Source: %s",
 	"known good":     "within the allowance",
 	"known bad":      "OUTSIDE THE ALLOWANCE: do not use these results",
 	"caution":        "Caution",
@@ -484,7 +484,7 @@ func (t *Text) known() {
 		if k.OK {
 			ok = textWords["known good"]
 		}
-		t.item(fmt.Sprintf(textWords["known one"], k.Name, bare6(k.Expected), bare6(k.Got), bare6(k.Allowance), k.Unit, ok, k.Source))
+		t.item(fmt.Sprintf(textWords["known one"], k.Name, bare6(k.Expected), bare6(k.Got), k.Amount(bare6(k.Allowance)), ok, k.Source))
 	}
 }
 

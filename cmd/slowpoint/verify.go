@@ -35,7 +35,7 @@ func verifyCommand() *cobra.Command {
 					missed++
 				}
 				n++
-				fmt.Fprintf(w, "  %s\texpected %.6g %s\tgot %.6g\tallowance %.2g\t%s\t%s\n", r.Name, r.Expected, r.Unit, r.Got, r.Allowance, metWord(r.OK), r.Source)
+				fmt.Fprintf(w, "  %s\texpected %s\tgot %.6g\tallowance %.2g\t%s\t%s\n", r.Name, r.Amount(fmt.Sprintf("%.6g", r.Expected)), r.Got, r.Allowance, metWord(r.OK), r.Source)
 			}
 			if err := w.Flush(); err != nil {
 				return &failure{exitFault, err}
