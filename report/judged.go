@@ -1,6 +1,7 @@
 package report
 
 import (
+	"slices"
 	"strings"
 
 	"slowpoint/rules"
@@ -34,24 +35,30 @@ func judgedAt(f *rules.Finding) string {
 var ofTheInside = []*rules.Kind{rules.Hold, rules.HoldTable, rules.Lethality, rules.CoolWithin, rules.HeatWithin, rules.ByTheEnd}
 
 // judgedInPart says, a sentence for each place, which limits on heating and cooling were judged elsewhere than within the food or at its
-// centre: at the surface, at a point, or on the surroundings. What is met there says nothing of the rest.
+// centre: at the surface, at a point, or on the surroundings. What is met there says nothing of the rest. Where nothing but the surroundings
+// was judged, every limit on them is named.
 func (p *Product) judgedInPart() []string {
 	var places []string
 	names := map[string][]string{}
+	airOnly := true // nothing that weighs was judged on the food
+	for i := range p.Judgement.Findings {
+		f := &p.Judgement.Findings[i]
+		airOnly = airOnly && (f.Level != "must" || f.Verdict == rules.NotApplicable || strings.EqualFold(judgedAt(f), "medium"))
+	}
 	for i := range p.Judgement.Findings {
 		f := &p.Judgement.Findings[i]
 		where := judgedAt(f)
 		if where == "" || strings.EqualFold(where, "centre") || f.Level != "must" || f.Verdict == rules.NotApplicable {
 			continue
 		}
-		for _, k := range ofTheInside {
-			if f.Limit.Kind != nil && f.Limit.Kind.Name == k.Name {
-				if names[where] == nil {
-					places = append(places, where)
-				}
-				names[where] = append(names[where], "\""+f.Limit.Name+"\"")
-			}
+		inside := func(k *rules.Kind) bool { return f.Limit.Kind != nil && f.Limit.Kind.Name == k.Name }
+		if !airOnly && !slices.ContainsFunc(ofTheInside, inside) {
+			continue
 		}
+		if names[where] == nil {
+			places = append(places, where)
+		}
+		names[where] = append(names[where], "\""+f.Limit.Name+"\"")
 	}
 	var out []string
 	for _, where := range places {

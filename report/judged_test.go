@@ -15,9 +15,9 @@ func TestJudgedInPart(t *testing.T) {
 		{"every point", "the slowest place (", ""},
 		{"", "the slowest place (", ""},
 		{"centre", "the only place judged (", ""},
-		{"surface", "the slowest place of the surface (", `"Chill to store" was judged at the surface only: that says nothing of the inside.`},
-		{"medium", "the place shown (", `"Chill to store" was judged on the surroundings, not on the food.`},
-		{"probe", "the only place judged (", `"Chill to store" was judged at the point probe only: that says nothing of the rest of the food.`},
+		{"surface", "the slowest place of the surface (", `"Chill to store": judged at the surface only, which says nothing of the inside.`},
+		{"medium", "the place shown (", `"Chill to store": judged on the surroundings, not on the food.`},
+		{"probe", "the only place judged (", `"Chill to store": judged at the point probe only, which says nothing of the rest of the food.`},
 	} {
 		t.Run(x.where, func(t *testing.T) {
 			h, p := roastHead(), roast(t, model.Slab, rules.NotMet)
@@ -28,7 +28,7 @@ func TestJudgedInPart(t *testing.T) {
 				if x.says != "" && !strings.Contains(got, x.says) {
 					t.Errorf("%s does not say %s\n%s", name, x.says, got)
 				}
-				if x.says == "" && strings.Contains(got, "was judged") {
+				if x.says == "" && strings.Contains(got, ": judged ") {
 					t.Errorf("%s says that it was judged in part", name)
 				}
 			}
@@ -43,6 +43,24 @@ func TestJudgedInPart(t *testing.T) {
 				t.Errorf("caution: %v", due)
 			}
 		})
+	}
+}
+
+// TestJudgedOnAirAlone: a limit on the air of an oven is no reservation beside limits on the food, and one if it is all that was judged.
+func TestJudgedOnAirAlone(t *testing.T) {
+	p := roast(t, model.Slab, rules.Met)
+	for i := range p.Judgement.Findings {
+		p.Judgement.Findings[i].Limit.Kind = rules.StayBelow
+	}
+	p.Judgement.Findings[1].Limit.Where.Name = "medium"
+	if s := p.judgedInPart(); len(s) != 0 {
+		t.Errorf("beside limits on the food: %q", s)
+	}
+	for i := range p.Judgement.Findings {
+		p.Judgement.Findings[i].Limit.Where.Name = "medium"
+	}
+	if s := p.judgedInPart(); len(s) != 1 || s[0] != `"Core reached", "Chill, first part", "Chill to store": judged on the surroundings, not on the food.` {
+		t.Errorf("alone: %q", s)
 	}
 }
 
