@@ -1,7 +1,6 @@
 package workbook
 
 import (
-	"slices"
 	"strconv"
 	"strings"
 	"unicode"
@@ -246,27 +245,42 @@ func (l *Line) refusedName(heading, typed string) {
 // processIn finds the process among model.Refusals that a text names; nil if there is none. Blanks and hyphens within a word do not matter.
 // In a name or a note, one that is ruled out or that came before is passed over: not microwaved, standing after the fryer.
 func processIn(typed string, passing bool) *model.Refusal {
+	if typed == "" {
+		return nil
+	}
 	words := strings.FieldsFunc(Key(typed), func(c rune) bool { return !('a' <= c && c <= 'z') })
-	for i := range model.Refusals {
-		for _, w := range strings.Split(model.Refusals[i].Words, ", ") {
-			w = strings.ReplaceAll(w, " ", "")
-			ends := []string{w, w + "s", w + "d", w + "ed", strings.TrimSuffix(w, "e") + "ing"}
-			for k := range words {
-				if passing && k > 0 && (aside[words[k-1]] || words[k-1] == "the" && k > 1 && aside[words[k-2]]) {
-					continue
-				}
-				said := ""
-				for j := k; j < len(words) && len(said) <= len(w); j++ {
-					said += words[j]
-					if slices.Contains(ends, said) && !(j+1 < len(words) && harmless[words[j+1]]) {
-						return &model.Refusals[i]
-					}
-				}
+	for k := range words {
+		if passing && k > 0 && (aside[words[k-1]] || words[k-1] == "the" && k > 1 && aside[words[k-2]]) {
+			continue
+		}
+		said := words[k]
+		for j := k; ; {
+			if no := refusedWords[said]; no != nil && !(j+1 < len(words) && harmless[words[j+1]]) {
+				return no
 			}
+			if j++; j == len(words) || len(said) > longestRefused {
+				break
+			}
+			said += words[j]
 		}
 	}
 	return nil
 }
+
+// refusedWords are the words of model.Refusals without blanks, and what they become in a sentence: microwaves, microwaved, microwaving.
+var refusedWords, longestRefused = func() (map[string]*model.Refusal, int) {
+	all, longest := map[string]*model.Refusal{}, 0
+	for i := range model.Refusals {
+		for _, w := range strings.Split(model.Refusals[i].Words, ", ") {
+			w = strings.ReplaceAll(w, " ", "")
+			for _, form := range []string{w, w + "s", w + "d", w + "ed", strings.TrimSuffix(w, "e") + "ing"} {
+				all[form] = &model.Refusals[i]
+				longest = max(longest, len(form))
+			}
+		}
+	}
+	return all, longest
+}()
 
 // aside are words before a word of model.Refusals that rule it out, or put it before or after what is typed.
 var aside = map[string]bool{"no": true, "not": true, "non": true, "never": true, "without": true, "after": true, "before": true, "from": true, "for": true, "of": true}
