@@ -31,7 +31,7 @@ const (
 	finer   = 2
 )
 
-// movesIn says how the place moves in one step: where it is first and last and, if it goes beyond both by a millimetre or more, the farthest.
+// movesIn says how the place moves in one step: where it is first and last and, if it goes beyond both by 5 mm or more, the farthest.
 func (p *Product) movesIn(sp *model.Span) string {
 	heats := heats(sp)
 	long := sp.EndS - sp.StartS
@@ -68,7 +68,7 @@ func (p *Product) movesIn(sp *model.Span) string {
 	}
 	a, b, via := p.Product.Where(first), p.Product.Where(last), p.Product.Where(far)
 	switch {
-	case most >= 0.001 && via != a && via != b:
+	case most >= 0.005 && via != a && via != b:
 		return say("moves via", sp.Step.Name, what, a, via, b)
 	case a == b:
 		return say("moves not", sp.Step.Name, what, a)
@@ -76,8 +76,12 @@ func (p *Product) movesIn(sp *model.Span) string {
 	return say("moves", sp.Step.Name, what, a, b)
 }
 
-// extremesAt gives the coldest or the hottest place at each instant; what is within a hundredth of a degree of the centre is the centre, for
-// a food of one temperature has no place of its own.
+// sameAsCentreK is how near to the centre's temperature the coldest or hottest place is no other place, K: in a food of nearly one temperature
+// a tenth of a degree is less than any probe tells, and in one that has just come into other surroundings the inside is still flat to a
+// hundredth of the difference from the coldest to the hottest place.
+const sameAsCentreK, sameAsCentre = 0.1, 0.01
+
+// extremesAt gives the coldest or the hottest place at each instant; the centre where that is as cold or as hot.
 func (p *Product) extremesAt(times []float64, coldest bool) []model.Place {
 	s := p.History.SampleAt(append([]float64(nil), times...))
 	at, c := s.HottestAt, s.Hottest
@@ -86,7 +90,8 @@ func (p *Product) extremesAt(times []float64, coldest bool) []model.Place {
 	}
 	out := make([]model.Place, len(at))
 	for i := range at {
-		if len(s.Points) == 0 || math.Abs(s.Points[0][i]-c[i]) >= 0.01 {
+		least := max(sameAsCentreK, p.History.ErrorK, sameAsCentre*(s.Hottest[i]-s.Coldest[i]))
+		if len(s.Points) == 0 || math.Abs(s.Points[0][i]-c[i]) >= least {
 			out[i] = at[i]
 		}
 	}

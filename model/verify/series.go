@@ -32,7 +32,7 @@ func body(shape *model.Shape, radiusM, startC float64) model.Product {
 // oneStep is a body of one axis through one step; Biot and Fourier number on the half thickness or radius.
 func oneStep(shape *model.Shape, radiusM, bi, fo float64) (p Problem, endS float64) {
 	endS = fo * radiusM * radiusM / alpha
-	return Problem{fmt.Sprintf("%s, Bi %s, Fo %g", shape.Name, biot(bi), fo), body(shape, radiusM, chillFromC),
+	return Problem{fmt.Sprintf("%s, %s, Fo %g", shape.Name, biot(bi), fo), body(shape, radiusM, chillFromC),
 		[]model.Step{step("chill", endS, exposure(bi*tested.KWmK/radiusM, chillToC))}}, endS
 }
 
@@ -177,12 +177,12 @@ func filmed(h float64) string {
 	return fmt.Sprintf("film %g W/(m²·K)", h)
 }
 
-// biot words a Biot number.
+// biot words a Biot number; an endless one holds the surface.
 func biot(bi float64) string {
 	if math.IsInf(bi, 1) {
-		return "∞"
+		return "surface held"
 	}
-	return fmt.Sprintf("%g", bi)
+	return fmt.Sprintf("Bi %g", bi)
 }
 
 func limitCases() []Case {
