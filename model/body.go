@@ -551,6 +551,11 @@ func (h *History) Sample(everyS float64) Samples {
 	for ; ended < len(h.Spans); ended++ {
 		times = append(times, h.Spans[ended].EndS)
 	}
+	return h.SampleAt(times)
+}
+
+// SampleAt gives the samples at chosen instants, at least one, s, put in order.
+func (h *History) SampleAt(times []float64) Samples {
 	s := Samples{TimesS: near(rising(times))}
 	n := len(s.TimesS)
 	courses := make([]float64, (len(h.Points)+3)*n)

@@ -21,12 +21,43 @@ func (p *Product) beside() []string {
 			s = append(s, says)
 		}
 	}
+	s = append(s, p.alternatives()...)
+	s = append(s, p.judgedInPart()...)
+	for _, f := range p.worstFirst() {
+		if f.StillWarm != "" && f.Limit != nil {
+			s = append(s, say("beside still warm", f.Limit.Name, f.StillWarm))
+		}
+	}
 	s = append(s, p.untils()...)
 	if decides == nil { // why nothing was judged says the same
 		return s
 	}
 	if idle := p.notApplied(); idle != "" {
 		s = append(s, idle)
+	}
+	return s
+}
+
+// alternatives says of each group of which any limit will do how many there are, which one decides, and what the others came to.
+func (p *Product) alternatives() []string {
+	const most = 4
+	var s []string
+	for _, g := range p.Judgement.Groups {
+		if !g.AnyOf || g.Verdict == rules.NotApplicable || len(g.Members) < 2 {
+			continue
+		}
+		var others []string
+		for _, m := range g.Members {
+			if m.Name != g.DecidedBy {
+				others = append(others, say("one of other", m.Name, m.Verdict))
+			}
+		}
+		more := ""
+		if len(others) > most {
+			more = say("glyph more", len(others)-most)
+			others = others[:most]
+		}
+		s = append(s, say("one of", g.DecidedBy, len(g.Members), g.Group, strings.Join(others, ", ")+more))
 	}
 	return s
 }

@@ -21,6 +21,8 @@ type trigger struct {
 // triggers are the cautions in the order in which they are printed. The texts are in words, under "caution " and the key.
 var triggers = []trigger{
 	{"thin margin", thinMargin},
+	{"cooling limit did not apply", stillWarm},
+	{"judged in part", inPart},
 	{"resolution coarser than margin", coarse},
 	{"limit without citation", uncited},
 	{"step did not reach its temperature", stepsWhere(func(sp *model.Span) bool { return sp.Reached != nil && !*sp.Reached })},
@@ -173,6 +175,17 @@ func thinMargin(h *Head, p *Product) ([]any, bool) {
 		}
 	}
 	return []any{strings.Join(names, ", "), h.difference(2, nearest)}, len(names) > 0
+}
+
+// stillWarm: a limit on cooling did not apply to food that was warm enough for it.
+func stillWarm(h *Head, p *Product) ([]any, bool) {
+	var names []string
+	for i := range p.Judgement.Findings {
+		if f := &p.Judgement.Findings[i]; f.StillWarm != "" && f.Limit != nil {
+			names = append(names, f.Limit.Name)
+		}
+	}
+	return []any{strings.Join(names, ", ")}, len(names) > 0
 }
 
 // coarse: the error estimate is as large as a margin.

@@ -923,14 +923,18 @@ func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *mo
 	}
 	for _, r := range p.Further {
 		if d.history != r.History {
-			course(say("line "+r.Name), r.History, d.place)
+			name := say("line " + r.Name)
+			if r.Name == rules.LowConductivity {
+				name = say("line "+r.Name, d.called())
+			}
+			course(name, r.History, d.place)
 		}
 	}
 	switch name := p.nameOf(d.history); {
 	case name != "" && p.run(rules.WellMixed) != nil:
-		course(say("line conducting"), p.History, d.place)
+		course(say("line conducting", d.called()), p.History, d.place)
 	case name != "":
-		course(say("line usual"), p.History, d.place)
+		course(say("line usual", d.called()), p.History, d.place)
 	}
 }
 

@@ -228,6 +228,9 @@ func (j *JSON) Close() error {
 	j.value("every_s", exactNumber(&j.h.EveryS))
 	list(j, "problems", problemsOf(j.h.Problems), false)
 	list(j, "not_calculated", notCalculatedOf(j.h.NotCalculated), false)
+	if len(j.h.LeftOut) > 0 {
+		list(j, "left_out", j.h.LeftOut, false)
+	}
 	list(j, "known_answers", knownOf(j.h.Known), false)
 	j.put("    \"products\": [")
 	if j.n > 0 {

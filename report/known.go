@@ -133,7 +133,7 @@ func (d *doc) knownTable(ks []KnownAnswer) {
 		if i == 0 || k.Source != ks[i-1].Source {
 			rows = append(rows, []string{say("known source", k.Source)})
 		}
-		rows = append(rows, []string{k.Name, significant(k.Expected) + " " + k.Unit, significant(k.Got) + " " + k.Unit, "± " + significant(k.Allowance) + " " + k.Unit, ok})
+		rows = append(rows, []string{k.Name, k.Amount(significant(k.Expected)), k.Amount(significant(k.Got)), "± " + k.Amount(significant(k.Allowance)), ok})
 	}
 	if len(rows) == 0 {
 		return

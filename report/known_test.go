@@ -33,6 +33,14 @@ func knownCases() []KnownAnswer {
 }
 
 // A product's report shows the cases of its shape and surroundings, and every case that is outside its allowance.
+// TestAmountOfAPureNumber: a case without a unit has none printed.
+func TestAmountOfAPureNumber(t *testing.T) {
+	pure, warm := KnownAnswer{Unit: "-"}, KnownAnswer{Unit: "°C"}
+	if a, b := pure.Amount("0.005"), warm.Amount("0.005"); a != "0.005" || b != "0.005 °C" {
+		t.Errorf("%q, %q", a, b)
+	}
+}
+
 func TestClosestCases(t *testing.T) {
 	film := model.Step{Exposure: model.Exposure{Surface: model.MovingAir, Medium: model.Course{TimesS: []float64{0}, C: []float64{3}}}}
 	held := model.Step{Exposure: model.Exposure{Surface: model.Held, Medium: model.Course{TimesS: []float64{0}, C: []float64{3}}}}

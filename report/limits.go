@@ -24,7 +24,7 @@ func (h *Head) typed(l *rules.Limit, heading string, c *float64) string {
 
 // asTyped writes any other value of a limit as typed, or the number that is used.
 func asTyped(l *rules.Limit, heading string, v *float64, per float64, unit string) string {
-	if s := strings.TrimSpace(l.Typed[heading]); s != "" {
+	if s := l.AsTyped(heading); s != "" {
 		return s
 	}
 	if v == nil {

@@ -238,7 +238,11 @@ func (x *sheet) slowestSentence() string {
 	if hist.Recorded {
 		key = "chart sentence record"
 	}
-	out := say(key, x.decides.placeName, strings.Join(s, "; "))
+	args := []any{x.decides.placeName, strings.Join(s, "; ")}
+	if key == "chart sentence" || key == "chart sentence "+rules.LowConductivity {
+		args = append([]any{x.decides.called()}, args...)
+	}
+	out := say(key, args...)
 	var broken []string
 	for i, p := range newTimeAxis(hist, x.decides.part()).pieces {
 		if p.broken {
@@ -784,13 +788,13 @@ func (x *sheet) predicted() {
 		d.y += 55
 		d.text(x.profileSentence(times))
 	}
-	d.heading(say("sketch title"), 1, 48)
-	d.sketch(&x.p.Product, x.decides.place, x.decides.placeName, 38)
+	d.heading(say("sketch title", x.decides.called()), 1, 48)
+	d.sketch(&x.p.Product, x.decides.place, say("sketch place", x.decides.called(), x.decides.placeName), 38)
 	if x.p.Product.Shape == model.Stirred {
 		d.text(say("sketch sentence stirred", x.sizes()))
 		return
 	}
-	d.text(say("sketch sentence", x.p.Product.Shape.Name, x.sizes(), x.decides.placeName))
+	d.text(say("sketch sentence", x.p.Product.Shape.Name, x.sizes(), x.decides.called(), x.decides.placeName))
 }
 
 // levelsSentence names the limit lines of the chart in both units.
@@ -945,42 +949,6 @@ func (x *sheet) extremePlace(i int, c []float64, at []model.Place) string {
 		return x.p.Product.Where(model.Place{})
 	}
 	return x.p.Product.Where(at[i])
-}
-
-// moves says in words how the coldest and the hottest place move.
-func (x *sheet) moves() string {
-	s, shape := &x.p.Samples, x.p.Product.Shape
-	if len(s.ColdestAt) == 0 || shape == model.Stirred {
-		return say("moves stirred")
-	}
-	var out []string
-	for _, sp := range x.p.History.Spans {
-		at, c, what := s.HottestAt, s.Hottest, say("hottest")
-		if sp.Step.Stage != nil && sp.Step.Stage.Heats {
-			at, c, what = s.ColdestAt, s.Coldest, say("coldest")
-		}
-		first, last := "", ""
-		for i, t := range s.TimesS {
-			if t > sp.StartS && t <= sp.EndS && i < len(at) && i < len(c) {
-				last = x.extremePlace(i, c, at)
-				if first == "" {
-					first = last
-				}
-			}
-		}
-		switch {
-		case first == "":
-		case first == last:
-			out = append(out, say("moves not", sp.Step.Name, what, first))
-		default:
-			out = append(out, say("moves", sp.Step.Name, what, first, last))
-		}
-	}
-	all := say("moves sentence", capital(strings.Join(out, "; ")), x.decides.placeName)
-	if shape == model.LayeredSlab { // no column tells a pack from a food
-		all += say("moves layers")
-	}
-	return all
 }
 
 // profileSentence gives surface and middle at each time of the profile.

@@ -3,6 +3,7 @@
 package report
 
 import (
+	"strings"
 	"time"
 
 	"slowpoint/model"
@@ -24,9 +25,35 @@ type Head struct {
 	EveryS        float64  // interval of the courses, s
 	Problems      cell.Errors
 	NotCalculated []NotCalculated
+	LeftOut       []string      // products of the plan that this run was told to leave out
 	Known         []KnownAnswer // solved by this very program, in groups of one source
 	Products      int           // how many are calculated
 	MostPoints    int           // the largest number of points of a product, the centre counted: columns of the sheet Courses
+}
+
+// LeftOutWords says which products of the plan the run left out, as many names as fit a line or two; "" if there are none.
+func (h *Head) LeftOutWords() string {
+	const most = 8
+	n := len(h.LeftOut)
+	if n == 0 {
+		return ""
+	}
+	names := strings.Join(h.LeftOut[:min(n, most)], ", ")
+	if n > most {
+		names += say("left out more", n-most)
+	}
+	if n == 1 {
+		return say("left out one", names)
+	}
+	return say("left out", n, names)
+}
+
+// overviewTitle is the title of the overview: of the plan, or of that part of it which the run was about.
+func (h *Head) overviewTitle() string {
+	if len(h.LeftOut) > 0 {
+		return say("summary title part")
+	}
+	return say("summary title")
 }
 
 // Item is a row of the sheet Plan.
@@ -56,6 +83,14 @@ type KnownAnswer struct {
 	Steps         []model.Step // its surroundings
 }
 
+// Amount writes a number of the case with its unit; a pure number has none.
+func (k *KnownAnswer) Amount(number string) string {
+	if k.Unit == "-" {
+		return number
+	}
+	return number + " " + k.Unit
+}
+
 // Product is one product with everything that its documents show.
 type Product struct {
 	Product                                     model.Product
@@ -67,6 +102,7 @@ type Product struct {
 	Samples                                     model.Samples // every EveryS and at each change of step
 	Judgement                                   rules.Judgement
 	From                                        map[cell.Ref]string // where the cells of the findings come from, as that of Readings; nil if nothing is known
+	moved                                       string              // how the slowest place moves, once it was asked for
 	Lever                                       string              // the biggest lever in one sentence, for the page of the operator; "" if none was looked for
 }
 

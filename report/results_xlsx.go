@@ -639,6 +639,9 @@ func (b *Workbook) overview() *grid {
 func (b *Workbook) about(g *grid) {
 	h := b.h
 	g.words("")
+	if left := h.LeftOutWords(); left != "" {
+		g.words("", left)
+	}
 	for _, r := range [][2]string{{"Plan", h.Plan}, {"SHA-256 of the plan", h.SHA256}, {"Program", "slowpoint " + h.Version}, {"Date", isoDate(h)}} {
 		g.words("", r[0], r[1])
 	}

@@ -7,7 +7,7 @@ import (
 	"slowpoint/model"
 )
 
-// sketch draws the section of a product with the slowest place marked; it takes height mm of the page.
+// sketch draws the section of a product with a place marked, name in words beside it; it takes height mm of the page.
 func (d *doc) sketch(p *model.Product, at model.Place, name string, h float64) {
 	d.need(h)
 	s := section{d: d, p: p, at: at, name: name, x: d.left, y: d.y, h: h, x0: d.left}
@@ -68,7 +68,7 @@ type mark struct {
 // right of x = right, from the top down; names are moved apart.
 func (s *section) marks(to func(model.Place) (float64, float64), right float64, words bool) {
 	cx, cy := to(s.at)
-	all := []mark{{cx, cy, say("sketch slowest", s.name), false}}
+	all := []mark{{cx, cy, s.name, false}}
 	for _, pt := range s.p.Points {
 		if pt.Place != s.at && pt.Name != "centre" && len(all) < 6 {
 			x, y := to(pt.Place)

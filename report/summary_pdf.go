@@ -8,7 +8,7 @@ import (
 // WriteSummaryPDF writes the overview of a plan: one line a product, the tightest first. Thousands of rows are fine.
 func WriteSummaryPDF(w io.Writer, h *Head, rows []Row) (err error) {
 	defer caught(&err)
-	d := newDoc(h, say("summary title"))
+	d := newDoc(h, h.overviewTitle())
 	d.summary(rows)
 	return d.finish(w)
 }
@@ -16,7 +16,7 @@ func WriteSummaryPDF(w io.Writer, h *Head, rows []Row) (err error) {
 // OnePDF writes the overview and every product in one document. each hands over the products one by one and stops at an error.
 func OnePDF(w io.Writer, h *Head, rows []Row, each func(func(*Product) error) error) (err error) {
 	defer caught(&err)
-	d := newDoc(h, say("summary title"))
+	d := newDoc(h, h.overviewTitle())
 	d.summary(rows)
 	d.nest = 1
 	if err := each(func(p *Product) error {
@@ -31,9 +31,9 @@ func OnePDF(w io.Writer, h *Head, rows []Row, each func(func(*Product) error) er
 // summary writes the pages of the overview.
 func (d *doc) summary(rows []Row) {
 	h := d.head
-	d.title = say("summary title")
+	d.title = h.overviewTitle()
 	d.page()
-	d.heading(say("summary title"), 0, 20)
+	d.heading(h.overviewTitle(), 0, 20)
 	var n [4]int
 	list := make([]slim, len(rows))
 	for i, r := range rows {
@@ -46,6 +46,9 @@ func (d *doc) summary(rows []Row) {
 		sentence += say("summary refused", len(h.NotCalculated))
 	}
 	d.para(sentence, style{size: 11, bold: true, after: 2})
+	if left := h.LeftOutWords(); left != "" {
+		d.boxed([]string{left}, style{size: body, bold: true})
+	}
 	if h.NotImported > 0 {
 		d.boxed([]string{counted(h.NotImported, "not imported")}, style{size: body, bold: true})
 	}

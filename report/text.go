@@ -50,6 +50,7 @@ var textWords = map[string]string{
 	"refused":        "Products that could not be calculated",
 	"refused one":    "%s (%s)",
 	"list":           "All products, the most urgent first",
+	"list part":      "The products of this run, the most urgent first",
 	"list none":      "No product was calculated.",
 	"list one":       "%d. %s: %s.",
 	"list deciding":  " Deciding limit: %s.",
@@ -96,7 +97,7 @@ var textWords = map[string]string{
 	"because":        " (%s)",
 	"known":          "Known-answer cases solved by this program on this machine",
 	"known none":     "None were solved in this run.",
-	"known one":      "%s: expected %s, got %s, allowance %s %s: %s. Source: %s",
+	"known one":      "%s: expected %s, got %s, allowance %s: %s. Source: %s",
 	"known good":     "within the allowance",
 	"known bad":      "OUTSIDE THE ALLOWANCE: do not use these results",
 	"caution":        "Caution",
@@ -422,6 +423,7 @@ func (t *Text) front() {
 	if !h.Date.IsZero() {
 		t.line("date", h.day())
 	}
+	t.plain(h.LeftOutWords())
 	t.heading(1, "problems")
 	if len(h.Problems) == 0 {
 		t.line("no problems")
@@ -442,8 +444,13 @@ func (t *Text) front() {
 
 // list is one line a product, the most urgent first.
 func (t *Text) list() {
-	t.heading(1, "list")
+	if len(t.h.LeftOut) > 0 {
+		t.heading(1, "list part")
+	} else {
+		t.heading(1, "list")
+	}
 	rows := listed(t.h.NotCalculated, t.rows)
+	t.plain(t.h.LeftOutWords())
 	if len(t.rows) == 0 {
 		t.line("list none")
 	}
@@ -477,7 +484,7 @@ func (t *Text) known() {
 		if k.OK {
 			ok = textWords["known good"]
 		}
-		t.item(fmt.Sprintf(textWords["known one"], k.Name, bare6(k.Expected), bare6(k.Got), bare6(k.Allowance), k.Unit, ok, k.Source))
+		t.item(fmt.Sprintf(textWords["known one"], k.Name, bare6(k.Expected), bare6(k.Got), k.Amount(bare6(k.Allowance)), ok, k.Source))
 	}
 }
 

@@ -208,6 +208,9 @@ func (v *view) neverWarm(s scope) string {
 	if math.IsInf(top, 0) || math.IsNaN(top) {
 		return ""
 	}
+	if top > v.l.crossedC()+sameK {
+		return say("cool never fell", holes{"start": v.l.startWords(), "top": v.l.degrees(top, 1)})
+	}
 	return say("never above", holes{"start": v.l.startWords(), "top": v.l.degrees(top, 1)})
 }
 

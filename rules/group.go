@@ -39,9 +39,9 @@ func (j *Judgement) join(groups []Group) {
 	done := map[string]bool{}
 	for _, k := range t.order {
 		if t.counts(k, map[string]bool{}) {
-			v, by := t.judge(k, done)
+			v, by, members := t.judge(k, done)
 			g := t.groups[k]
-			j.Groups = append(j.Groups, GroupFinding{Group: g.Name, AnyOf: g.AnyOf, Verdict: v, DecidedBy: by})
+			j.Groups = append(j.Groups, GroupFinding{Group: g.Name, AnyOf: g.AnyOf, Verdict: v, DecidedBy: by, Members: members})
 		}
 	}
 }
@@ -70,20 +70,24 @@ func (t *tree) counts(k string, seen map[string]bool) bool {
 	return false
 }
 
-// judge gives a group's verdict and the name of the row that decides it.
-func (t *tree) judge(k string, seen map[string]bool) (Verdict, string) {
+// judge gives a group's verdict, the name of the row that decides it, and its rows.
+func (t *tree) judge(k string, seen map[string]bool) (verdict Verdict, by string, members []Member) {
 	open := map[string]bool{k: true}
 	for s := range seen {
 		open[s] = true
 	}
-	verdict, by, chosen := NotApplicable, "", -1
+	verdict = NotApplicable
+	chosen := -1
 	for i, m := range t.rows[k] {
 		v, name := NotApplicable, ""
 		if m.finding >= 0 {
 			v, name = t.j.Findings[m.finding].Verdict, t.j.Findings[m.finding].Limit.Name
 		} else if !open[m.group] && t.counts(m.group, map[string]bool{}) {
-			v, _ = t.judge(m.group, open)
+			v, _, _ = t.judge(m.group, open)
 			name = t.groups[m.group].Name
+		}
+		if name != "" {
+			members = append(members, Member{name, v})
 		}
 		if v == NotApplicable {
 			continue
@@ -100,7 +104,7 @@ func (t *tree) judge(k string, seen map[string]bool) (Verdict, string) {
 			}
 		}
 	}
-	return verdict, by
+	return verdict, by, members
 }
 
 // alternative marks everything within a row as not weighing.

@@ -62,12 +62,15 @@ func judgeOne(l *Limit, c *courses) Finding {
 	}
 	if s := v.lacks(); s != nil {
 		if l.Applies.All {
-			return v.blank(NotApplicable, say("stage lacking", holes{"stage": s.Name}))
+			f := v.blank(NotApplicable, say("stage lacking", holes{"stage": s.Name}))
+			v.uncooled(&f)
+			return f
 		}
 		return v.blank(CannotTell, say("stage lacking own", holes{"stage": s.Name}))
 	}
 	f := l.Kind.judge(v)
 	v.carryOver(&f)
+	v.uncooled(&f)
 	return f
 }
 

@@ -66,6 +66,15 @@ func (l *Limit) Faults() []Fault {
 	case k == HeatWithin && l.FromC != nil && l.ToC != nil && !(*l.ToC > *l.FromC):
 		add("To", "To must be warmer than From: the food is heated from From up to To", "swap From and To")
 	}
+	if c := l.Clock.AtC; c != nil && l.ToC != nil && l.FromC == nil {
+		switch { // By the end may well ask that the food has not risen again since
+		case k == CoolWithin && !(*l.ToC < *c):
+			add("Clock starts", "the temperature that is crossed must be warmer than To: the food cools from there down to To", "look at its unit, °C or °F")
+		case k == HeatWithin && !(*l.ToC > *c):
+			add("Clock starts", "the temperature that is crossed must be colder than To: the food is heated from there up to To", "look at its unit, °C or °F")
+		}
+	}
+	l.emptyFaults(add)
 	l.operatorFaults(add)
 	if k == CoolWithin || k == HeatWithin || k == ByTheEnd {
 		l.clockFaults(add)
@@ -80,6 +89,37 @@ func (l *Limit) Faults() []Fault {
 		add("Table", "the table has no rows", "add its rows to the sheet Tables")
 	}
 	return fs
+}
+
+// emptyFaults finds numbers that would let anything meet the limit.
+func (l *Limit) emptyFaults(add func(column, msg, hint string)) {
+	nought := func(x *float64) bool { return x != nil && *x <= 0 }
+	k := l.Kind
+	if k == Lethality {
+		for _, n := range []struct {
+			column string
+			x      *float64
+		}{{"Time", l.TimeS}, {"D", l.DS}, {"Log reductions", l.Logs}} {
+			if nought(n.x) {
+				add(n.column, "a lethality of nothing is met by any food", "type what the code asks for")
+			}
+		}
+	}
+	if k == Duration && nought(l.TimeS) && (l.CompareTime == AtLeast || l.CompareTime == MoreThan) {
+		add("Time", "any stage lasts that long", "type the time that the code asks for")
+	}
+	if k == Humidity {
+		switch {
+		case nought(l.HumidityPc):
+			add("Humidity", "any air is that humid", "type the relative humidity that the code asks for")
+		case (l.TimeS == nil || nought(l.TimeS)) && (l.SharePc == nil || nought(l.SharePc)):
+			column := "Time"
+			if l.SharePc != nil {
+				column = "Share of stage"
+			}
+			add(column, "no time at all is asked for, so that any air would do", "type the share of the stage, or the time, that the code asks for")
+		}
+	}
 }
 
 // operatorFaults checks that the operators point the way the kind does.

@@ -15,7 +15,9 @@ func TestStatedAnswers(t *testing.T) {
 		answer string
 		want   Verdict
 	}{
-		{"yes", Met}, {" Yes. ", Met}, {"yes, sealed bags", Met}, {"yes – seen by the cook", Met}, {"yes: form 4", Met}, {"yes; nothing else is open", Met},
+		{"yes", Met}, {" Yes. ", Met}, {"yes, sealed bags", Met}, {"yes – seen by the cook", Met}, {"yes: form 4", Met}, {"yes; both lids", Met}, {"Yes, checked on Monday by the chef", Met},
+		{"yes, if time allows", CannotTell}, {"yes, pending", CannotTell}, {"yes, mostly", CannotTell}, {"yes, should be", CannotTell}, {"yes – to be confirmed", CannotTell},
+		{"yes, when the chiller is free", CannotTell}, {"yes; nothing else is open", CannotTell},
 		{"yes, but not on Sundays", CannotTell}, {"yes, unless it is busy", CannotTell}, {"yes?", CannotTell}, {"yes, never checked", CannotTell},
 		{"yes and no", CannotTell}, {"yes mostly", CannotTell}, {"yes, isn't it", CannotTell}, {"yes, in no case", CannotTell}, {"yesterday", CannotTell},
 		{"no", NotMet}, {"No, never", NotMet}, {"", CannotTell}, {"perhaps", CannotTell},

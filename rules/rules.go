@@ -144,6 +144,7 @@ type Finding struct {
 	Notes       []string   // e.g. rose above From again at 3 h 05 min
 	Cautions    []string   // keys of the report's cautions: "slow come-up lethality", "lethality without floor", "below 60 °C table row", …
 	CarryOver   string     // that the limit is met only by what the food gets after its heating, in a sentence with numbers; "" elsewhere
+	StillWarm   string     // of a limit on cooling that did not apply though the food was warm enough: how warm, in a clause; "" elsewhere
 	Run         string     // the further run that this is the finding of; "" for the usual one
 }
 
@@ -153,6 +154,13 @@ type GroupFinding struct {
 	AnyOf     bool
 	Verdict   Verdict
 	DecidedBy string // limit or group name
+	Members   []Member
+}
+
+// Member is a limit or a group within a group, with its own verdict.
+type Member struct {
+	Name    string
+	Verdict Verdict
 }
 
 // The further runs of a product, besides the usual one.

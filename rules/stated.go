@@ -28,7 +28,20 @@ func judgeStated(v *view) Finding {
 }
 
 // doubts are words in an answer that may take back its yes.
-var doubts = map[string]bool{"no": true, "not": true, "never": true, "unless": true, "cannot": true, "except": true, "without": true}
+var doubts = wordsOf("no not never nothing none neither nor unless cannot except without but although though however if when whenever while until " +
+	"till once provided providing assuming assumed depends depending subject pending awaiting outstanding open due tbc tbd tba todo later soon " +
+	"planned plan intended expected estimated proposed almost nearly mostly mainly largely partly partially roughly approximately usually normally " +
+	"generally typically often sometimes occasionally rarely only some most maybe perhaps probably possibly likely presumably hopefully apparently " +
+	"supposedly theoretically should would could might may think believe guess hope suppose try trying aim unsure unclear unknown uncertain doubtful")
+
+// wordsOf makes a set of the words in a text.
+func wordsOf(text string) map[string]bool {
+	set := map[string]bool{}
+	for _, w := range strings.Fields(text) {
+		set[w] = true
+	}
+	return set
+}
 
 // plainYes tells whether what follows a yes (in lower case) leaves it a yes: nothing, or a mark and words that take nothing back.
 func plainYes(rest string) bool {
@@ -40,7 +53,7 @@ func plainYes(rest string) bool {
 		return false
 	}
 	for _, w := range strings.FieldsFunc(rest, func(r rune) bool { return !unicode.IsLetter(r) && r != '\'' && r != '’' }) {
-		if doubts[w] || strings.HasSuffix(w, "n't") || strings.HasSuffix(w, "n’t") {
+		if doubts[w] || w == "be" || strings.HasSuffix(w, "n't") || strings.HasSuffix(w, "n’t") {
 			return false
 		}
 	}

@@ -33,6 +33,9 @@ func judgeStay(v *view, sign float64) Finding {
 			o.word, kept = "stay below", l.coldSide(*level-t.errK-t.ownK)
 		}
 		o.value, o.at, o.bad = c, at, -sign*c
+		if v.begins(at) {
+			o.word += " began"
+		}
 		if !t.rank {
 			own := l.own()
 			o.holes = holes{"value": l.degrees(c, int(-sign)), "level": l.operator(sign < 0) + own["bare"]}
@@ -43,6 +46,16 @@ func judgeStay(v *view, sign float64) Finding {
 		return o
 	}
 	return v.judgePlaces(q)
+}
+
+// begins tells whether an instant is the start of one of the stages.
+func (v *view) begins(at float64) bool {
+	for _, iv := range v.stages {
+		if at == iv.a {
+			return true
+		}
+	}
+	return false
 }
 
 // excursion is a limit on how long a place may be beyond the temperature.

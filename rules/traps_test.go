@@ -2,6 +2,7 @@ package rules
 
 import (
 	"math"
+	"slices"
 	"strings"
 	"testing"
 
@@ -229,12 +230,28 @@ func TestInstants(t *testing.T) {
 	closeTo(t, "second phase", frozen.Value, 100, 1e-9)
 }
 
+// TestGroupTellsItsMembers: which limits a group has, with their own verdicts, whichever decides.
+func TestGroupTellsItsMembers(t *testing.T) {
+	h := record(t, "cool 0-200", "0:90 200:5")
+	all := Applies{All: true}
+	j := Judge([]Limit{
+		{Name: "fast", Kind: CoolWithin, Applies: all, FromC: c(60), ToC: c(20), TimeS: min_(30), Clock: crossing, Group: "g"},
+		{Name: "cold", Kind: ByTheEnd, Applies: all, ToC: c(8), Group: "g"},
+		{Name: "hot", Kind: StayAbove, Applies: all, Stages: st(model.HoldHot), FromC: c(63), Group: "g"}}, []Group{{Name: "g", AnyOf: true}}, Subject{History: h})
+	if want := []Member{{"fast", NotMet}, {"cold", Met}, {"hot", NotApplicable}}; len(j.Groups) != 1 || !slices.Equal(j.Groups[0].Members, want) || j.Groups[0].DecidedBy != "cold" {
+		t.Errorf("%+v, want %v", j.Groups, want)
+	}
+}
+
 // TestEveryPoint judges each place by its own course: the coldest-anywhere envelope would miss the hold here.
 func TestEveryPoint(t *testing.T) {
 	h := records(t, "cook 0-60", trace(t, "centre", 0, "0:5 30:63 50:63 60:40"), trace(t, "surface", 30, "0:5 10:63 31:63 40:30 60:20"))
 	l := Limit{Kind: Hold, FromC: c(63), TimeS: min_(15), Counting: Total}
 	if got := one(t, l, h); got.Verdict != Met || got.PlaceName != "centre" || *got.Value != 20 {
 		t.Errorf("%v at %s: %v", got.Verdict, got.PlaceName, *got.Value)
+	}
+	if slow := one(t, Limit{Kind: CoolWithin, ToC: c(25), TimeS: min_(60), Clock: Clock{Start: model.Cook}, Where: Where{"surface"}}, h); !strings.HasPrefix(slow.Why, "The surface took ") {
+		t.Errorf("the surface alone was judged: %s", slow.Why) // not "The slowest place (surface)"
 	}
 	// the reported margin considers all places: the surface has 21 min but is colder elsewhere
 	l = Limit{Kind: StayAbove, FromC: c(10)}

@@ -57,6 +57,10 @@ var words = map[string]string{
 	"cool stage later":  "{who} was still at {left} when the stage {stage} ended; it was down to {to} only {value} from {start}, after that stage. If the limit lets the later stages count, name them too in Stage, as {wider}.",
 	"cool not fallen":   "{who} had not yet fallen to {start} when the history ended, so the clock never started and it cannot be told.",
 	"cool nowhere":      "No place was above the temperature at which the clock starts, so the limit does not apply.",
+	"cool never fell":   "The food was above {start} (up to {top}) and never fell to it, so the clock did not start and the limit does not apply.",
+	"uncooled order":    "The food was above {start} (up to {top}, at the end {end}), but the stage {stage} does not come after that, so it cannot be told. Are the steps in order?",
+	"uncooled other":    "The process has no stage {stage}, which this limit is about, but it chills food that was above {start} (up to {top}) in its stage {other}, so it cannot be told. Call that stage {stage}, or let the limit name it.",
+	"uncooled":          "the food was above {start} (up to {top}), is at {end} at the end, and no stage chills it",
 	"heat closed":       "{who} took {value} to {to}, and {time} is allowed.",
 	"heat late":         "{who} had not reached {to} after {value}, and {time} is allowed.",
 	"heat open":         "{who} had not reached {to} when the history ended after {value}, and {time} is allowed, so it cannot be told.",
@@ -67,6 +71,8 @@ var words = map[string]string{
 	"band again":        "{who} was between {from} and {to} more than once ({count} periods){in}, and the limit allows one only.",
 	"stay above":        "{who} fell to {value}, and {level} must be kept.",
 	"stay below":        "{who} rose to {value}, and {level} must be kept.",
+	"stay above began":  "{who} was at {value} as the stage began and never colder, and {level} must be kept.",
+	"stay below began":  "{who} was at {value} as the stage began and never warmer, and {level} must be kept.",
 	"out above":         "{who} was below {bare} for {value}{in}, and {time} is allowed.",
 	"out below":         "{who} was above {bare} for {value}{in}, and {time} is allowed.",
 	"out again":         "{who} was beyond {bare} more than once ({count} periods){in}, and the limit allows one only.",
@@ -94,8 +100,11 @@ var words = map[string]string{
 	"stated no":         "Answered: {answer}.",
 	"stated text":       "Answered: {answer}; only yes, yes with a comma and a remark that takes nothing back, or no decides, so it cannot be told.",
 
-	"who every":  "The least favourable place ({place})",
-	"who slow":   "The slowest place ({place})",
+	"who every":         "The least favourable place ({place})",
+	"who slow":          "The slowest place ({place})",
+	"who surface slow":  "The slowest place of the surface ({place})",
+	"who surface every": "The least favourable place of the surface ({place})",
+
 	"who named":  "The {place}",
 	"who medium": "The medium",
 
@@ -155,7 +164,7 @@ func lasting(s float64, up int) string {
 // inF tells whether the limit's own temperatures, or those of its table, were typed in °F; its sentences then speak °F.
 func (l *Limit) inF() bool {
 	for _, column := range []string{"From", "To", "Reference temperature", "Allowance", "Clock starts"} {
-		if t := strings.TrimSpace(l.Typed[column]); strings.Contains(t, "°") {
+		if t := l.AsTyped(column); strings.Contains(t, "°") {
 			return strings.HasSuffix(t, "F")
 		}
 	}
@@ -202,10 +211,20 @@ func clockTime(s float64) string {
 
 // figure is a number of the limit as typed, or as the program holds it.
 func (l *Limit) figure(column, held string) string {
-	if t := l.Typed[column]; t != "" {
+	if t := l.AsTyped(column); t != "" {
 		return t
 	}
 	return held
+}
+
+// AsTyped is a number of the limit as it was typed, in the form that it takes in a sentence: the form of a clock in brackets, a difference
+// without the word. "" where nothing was typed.
+func (l *Limit) AsTyped(column string) string {
+	t := strings.TrimSuffix(strings.TrimSpace(l.Typed[column]), " difference")
+	if at := strings.LastIndex(t, " "); at > 0 && strings.Contains(t[at:], ":") && !strings.ContainsAny(t[at:], "0123456789") {
+		return t[:at] + " (" + t[at+1:] + ")"
+	}
+	return t
 }
 
 // exactly writes a limit's own number without rounding.
@@ -285,6 +304,10 @@ func (v *view) sentence(f *Finding, o outcome, tail string) string {
 	case same(name, "medium"):
 		h["who"] = say("who medium", nil)
 	case name != "" && !same(name, "every point") && !same(name, "surface"):
+		h["who"] = say("who named", holes{"place": f.PlaceName})
+	case same(name, "surface") && f.PlaceName != "surface":
+		h["who"] = say(map[bool]string{true: "who surface slow", false: "who surface every"}[o.slow], holes{"place": f.PlaceName})
+	case same(name, "surface"):
 		h["who"] = say("who named", holes{"place": f.PlaceName})
 	case o.slow:
 		h["who"] = say("who slow", holes{"place": f.PlaceName})

@@ -64,7 +64,7 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 		return err
 	}
 	names := filesOf(plan)
-	if err := keepOnly(plan, o.only); err != nil {
+	if head.LeftOut, err = keepOnly(plan, o.only); err != nil {
 		return err
 	}
 	if err := files.makeFolder(folder); err != nil {
@@ -191,11 +191,28 @@ func headOf(plan *workbook.Plan, o *checkOptions) (*report.Head, error) {
 	return h, nil
 }
 
-// filesOf gives each product of the whole plan the file name of its report, so that --only names a report as a run of everything does.
+// filesOf gives each product of the whole plan the file name of its report, those that cannot be calculated too: so --only, and a product
+// with a mistake, name the reports of the others as a run of everything does, and what is left of an earlier run is known.
 func filesOf(plan *workbook.Plan) map[string]string {
-	products := make([]string, len(plan.Products))
-	for i := range products {
-		products[i] = plan.Products[i].Name
+	type named struct {
+		row  int
+		name string
+	}
+	var all []named
+	for i := range plan.Products {
+		all = append(all, named{plan.Products[i].At.Row, plan.Products[i].Name})
+	}
+	for _, n := range plan.NotCalculated {
+		all = append(all, named{n.At.Row, n.Product})
+	}
+	slices.SortStableFunc(all, func(a, b named) int { return a.row - b.row })
+	var products []string
+	seen := map[string]bool{"": true}
+	for _, n := range all {
+		if !seen[n.name] { // a name that comes twice is a mistake of the second row
+			products = append(products, n.name)
+		}
+		seen[n.name] = true
 	}
 	out := make(map[string]string, len(products))
 	for i, file := range fileNames(products) {
@@ -204,10 +221,10 @@ func filesOf(plan *workbook.Plan) map[string]string {
 	return out
 }
 
-// keepOnly drops the products that were not asked for; an unknown name is an error.
-func keepOnly(plan *workbook.Plan, only []string) error {
+// keepOnly drops the products that were not asked for, and names them; an unknown name is an error.
+func keepOnly(plan *workbook.Plan, only []string) (left []string, err error) {
 	if len(only) == 0 {
-		return nil
+		return nil, nil
 	}
 	var names []string
 	for i := range plan.Products {
@@ -218,14 +235,20 @@ func keepOnly(plan *workbook.Plan, only []string) error {
 	}
 	for _, o := range only {
 		if !slices.ContainsFunc(names, func(n string) bool { return sameName(n, o) }) {
-			return &failure{exitInput, fmt.Errorf("--only %q: the plan has no product of that name; it has %s", o, strings.Join(names[:min(len(names), 20)], ", "))}
+			return nil, &failure{exitInput, fmt.Errorf("--only %q: the plan has no product of that name; it has %s", o, strings.Join(names[:min(len(names), 20)], ", "))}
 		}
 	}
 	keep := func(n string) bool {
 		return slices.ContainsFunc(only, func(o string) bool { return sameName(n, o) })
 	}
-	plan.Products = slices.DeleteFunc(plan.Products, func(p workbook.Product) bool { return !keep(p.Name) })
-	return nil
+	plan.Products = slices.DeleteFunc(plan.Products, func(p workbook.Product) bool {
+		if keep(p.Name) {
+			return false
+		}
+		left = append(left, p.Name)
+		return true
+	})
+	return left, nil
 }
 
 // sameName compares names without regard to case and blanks.
@@ -478,7 +501,11 @@ func (r *runner) tell(w io.Writer) {
 	if len(r.rows) > most || len(r.head.NotCalculated) > most {
 		fmt.Fprintf(w, "… at most %d of a kind are shown here; all of them are in report.txt\n", most)
 	}
-	fmt.Fprintf(w, "\n%s\nCalculated from the inputs, not measured; your food authority decides.\nResults in %s\n", r.counts(), r.folder)
+	fmt.Fprintf(w, "\n%s\n", r.counts())
+	if left := r.head.LeftOutWords(); left != "" {
+		fmt.Fprintln(w, left)
+	}
+	fmt.Fprintf(w, "Calculated from the inputs, not measured; your food authority decides.\nResults in %s\n", r.folder)
 	if stale := r.shelf.stale(); stale != "" {
 		fmt.Fprintln(w, stale)
 	}

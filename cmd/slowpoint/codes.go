@@ -27,7 +27,7 @@ func codesCommand(files *shelf) *cobra.Command {
 			if len(found) == 0 {
 				return &failure{exitInput, fmt.Errorf("no starter limit matches%s%s", given("where", where), given("stage", stage))}
 			}
-			fmt.Fprintf(out, "%s. %s\nCopy with: slowpoint codes copy ID... PLAN.xlsx\n", count(len(found), "starter limit"), confirm)
+			fmt.Fprintf(out, "%s. %s\nCopy with: slowpoint codes copy ID... PLAN.xlsx\n", standFor(found), confirm)
 			return nil
 		},
 	}
@@ -35,6 +35,34 @@ func codesCommand(files *shelf) *cobra.Command {
 	cmd.Flags().StringVar(&where, "where", "", "part of the name of a `PLACE`, issuer or document")
 	cmd.Flags().StringVar(&stage, "stage", "", "`STAGE`: cook, cool, hold hot, …")
 	return cmd
+}
+
+// standFor counts limits, and the published rows that they stand for: a table is one limit, and a clause may take several.
+func standFor(found []codes.Row) string {
+	covered, tables, rows, parts := 0, 0, 0, 0
+	for i := range found {
+		r := &found[i]
+		covered += len(r.Covers)
+		if len(r.Tables) > 0 {
+			tables++
+			rows += len(r.Tables)
+		}
+		if len(r.Covers) == 0 {
+			parts++
+		}
+	}
+	s := fmt.Sprintf("%s, for %s of published codes", count(len(found), "starter limit"), count(covered, "row"))
+	var how []string
+	if tables > 0 {
+		how = append(how, fmt.Sprintf("%d of the limits have a table, with %s in all", tables, count(rows, "row")))
+	}
+	if parts > 0 {
+		how = append(how, fmt.Sprintf("%d are further parts of a clause", parts))
+	}
+	if len(how) > 0 {
+		s += ": " + strings.Join(how, ", ")
+	}
+	return s
 }
 
 // given repeats a flag as it was given; "" if it was not.

@@ -19,6 +19,7 @@ import (
 
 	"github.com/google/go-cmp/cmp"
 	"github.com/rogpeppe/go-internal/testscript"
+	"github.com/xuri/excelize/v2"
 )
 
 // TestMain lets scripts and tests start this very program as the command slowpoint.
@@ -429,6 +430,62 @@ func TestOnlyKeepsFileNames(t *testing.T) {
 	}
 }
 
+// Whoever has a part of a plan calculated sees in every result that there is more of it: three products more, of which one would not be met.
+func TestOnlyTellsWhatItLeavesOut(t *testing.T) {
+	dir := filepath.Join(t.TempDir(), "plan")
+	writePlan(t, dir, map[string]string{
+		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nGood,A,slab,21,Mash,60\nBad,A,slab,140,Mash,60\nThird,A,slab,23,Mash,60\nFourth,A,slab,25,Mash,60\n",
+		"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Freezing point (°C),Source\nMash,0.52,1040,3600,no,-1,invented\n",
+		"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\nA,chill,cool,90,film,3,25\n",
+		"Limits":   "Limit,Rule,Stage,Applies to,To (°C),Code,Clause,Edition\ncold,by the end,cool,all,21,invented,1,1\n",
+	})
+	check := func(only ...string) string {
+		var told, errs bytes.Buffer
+		if code := run(append([]string{"check", dir, "--date", "2026-01-31"}, only...), nil, &told, &errs); code != exitMet {
+			t.Fatalf("exit %d: %s%s", code, &told, &errs)
+		}
+		return told.String()
+	}
+	const left = "3 more products of the plan were left out by --only, and nothing is said of them here: Bad, Third, Fourth."
+	if told := check("--only", "Good"); !strings.Contains(told, "\n"+left+"\n") {
+		t.Errorf("the screen:\n%s", told)
+	}
+	read := func(name string) string {
+		b, err := os.ReadFile(filepath.Join(dir+"-results", name))
+		if err != nil {
+			t.Fatal(err)
+		}
+		return string(b)
+	}
+	var js struct {
+		LeftOut []string `json:"left_out"`
+	}
+	if err := json.Unmarshal([]byte(read("results.json")), &js); err != nil || strings.Join(js.LeftOut, ", ") != "Bad, Third, Fourth" {
+		t.Errorf("results.json: %v %v", js.LeftOut, err)
+	}
+	if n := strings.Count(read("report.txt"), left); n != 2 { // beside the plan, and above the list of products
+		t.Errorf("report.txt says it %d times", n)
+	}
+	book, err := excelize.OpenFile(filepath.Join(dir+"-results", "results.xlsx"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer book.Close()
+	if found, err := book.SearchSheet("Overview", left); err != nil || len(found) != 1 {
+		t.Errorf("results.xlsx: %v %v", found, err)
+	}
+	if tool := poppler("pdftotext", t.Fatalf); tool != "" {
+		out, err := exec.Command(tool, "-layout", "-l", "1", filepath.Join(dir+"-results", "summary.pdf"), "-").Output()
+		page := strings.Join(strings.Fields(string(out)), " ")
+		if err != nil || !strings.Contains(page, left) || !strings.Contains(page, "Overview of a part of the plan") {
+			t.Errorf("summary.pdf: %v\n%s", err, page)
+		}
+	}
+	if told := check("--only", "Good", "--only", "third", "--only", "fourth"); !strings.Contains(told, "1 more product of the plan was left out by --only, and nothing is said of it here: Bad.") {
+		t.Errorf("the screen:\n%s", told)
+	}
+}
+
 func TestBeside(t *testing.T) {
 	here := filepath.Join(t.TempDir(), "summer menu")
 	if err := os.MkdirAll(filepath.Join(here, "trays"), 0o755); err != nil {
@@ -500,5 +557,32 @@ func TestFilesOfAnEarlierRunAreTold(t *testing.T) {
 	}
 	if got := said("--no-pdf"); !strings.Contains(got, left+"summary.pdf\n") {
 		t.Errorf("without PDFs: %s", got)
+	}
+}
+
+// The report of a product that was calculated once, and now has a mistake, is told to be of an earlier run; the others keep their names.
+func TestReportOfARefusedProductIsTold(t *testing.T) {
+	dir := filepath.Join(t.TempDir(), "plan")
+	check := func(thickness string) string {
+		writePlan(t, dir, map[string]string{
+			"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\na/b,A,slab," + thickness + ",Mash,60\na_b,A,slab,37,Mash,60\n",
+			"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Freezing point (°C),Source\nMash,0.52,1040,3600,no,-1,invented\n",
+			"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\nA,chill,cool,90,film,3,25\n",
+			"Limits":   "Limit,Rule,Stage,Applies to,To (°C),Code,Clause,Edition\ncold,by the end,cool,all,30,invented,1,1\n",
+		})
+		var told, errs bytes.Buffer
+		run([]string{"check", dir, "--date", "2026-01-31"}, nil, &told, &errs)
+		return told.String()
+	}
+	check("21")
+	first, err := os.ReadFile(filepath.Join(dir+"-results", "a_b.pdf"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if told := check("-20"); !strings.Contains(told, "Left from an earlier run, not of this one: a_b.pdf\n") {
+		t.Errorf("the screen:\n%s", told)
+	}
+	if now, err := os.ReadFile(filepath.Join(dir+"-results", "a_b.pdf")); err != nil || !bytes.Equal(now, first) {
+		t.Errorf("the old report of a/b is now that of another product: %v", err)
 	}
 }

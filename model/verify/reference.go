@@ -2,6 +2,7 @@ package verify
 
 import (
 	"math"
+	"strings"
 
 	"slowpoint/model"
 )
@@ -147,7 +148,7 @@ func referenceCases() []Case {
 	}
 	point := func(id, point string, t, want float64) Case {
 		r := by[id]
-		return Case{id + ", " + r.Name + ": " + point + " after " + duration(t), Reference, twoMethods, "°C", want, r.AllowK, r.at(r.Points[point], t), r.Problem}
+		return Case{id + ", " + r.Name + ": " + strings.ReplaceAll(point, "_", " ") + " after " + duration(t), Reference, twoMethods, "°C", want, r.AllowK, r.at(r.Points[point], t), r.Problem}
 	}
 	sampled := func(id, what string, t, want float64, of func(*model.Samples, int) float64) Case {
 		r := by[id]

@@ -32,7 +32,7 @@ func body(shape *model.Shape, radiusM, startC float64) model.Product {
 // oneStep is a body of one axis through one step; Biot and Fourier number on the half thickness or radius.
 func oneStep(shape *model.Shape, radiusM, bi, fo float64) (p Problem, endS float64) {
 	endS = fo * radiusM * radiusM / alpha
-	return Problem{fmt.Sprintf("%s, Bi %g, Fo %g", shape.Name, bi, fo), body(shape, radiusM, chillFromC),
+	return Problem{fmt.Sprintf("%s, %s, Fo %g", shape.Name, biot(bi), fo), body(shape, radiusM, chillFromC),
 		[]model.Step{step("chill", endS, exposure(bi*tested.KWmK/radiusM, chillToC))}}, endS
 }
 
@@ -75,7 +75,7 @@ func productCases() []Case {
 		if shape == model.Brick {
 			size = model.Size{ThicknessM: 0.06, WidthM: 0.1, LengthM: 0.2}
 		}
-		return Problem{fmt.Sprintf("%s, film %g W/(m²·K), %s", shape.Name, h, duration(t)),
+		return Problem{fmt.Sprintf("%s, %s, %s", shape.Name, filmed(h), duration(t)),
 			model.Product{Name: shape.Name, Shape: shape, Size: size, Food: material(tested), StartC: chillFromC}, []model.Step{step("chill", t, exposure(h, chillToC))}}
 	}
 	var list []Case
@@ -108,7 +108,7 @@ func halfSpaceCases() []Case {
 		{0.005, 60, held, 0.214140653},
 	} {
 		half := 9.5 * math.Sqrt(alpha*c.t) // so thick that the other face is not felt
-		p := Problem{fmt.Sprintf("%g mm below a face, film %g W/(m²·K), %s", 1000*c.x, c.h, duration(c.t)), body(model.Slab, half, chillFromC),
+		p := Problem{fmt.Sprintf("%g mm below a face, %s, %s", 1000*c.x, filmed(c.h), duration(c.t)), body(model.Slab, half, chillFromC),
 			[]model.Step{step("chill", c.t, exposure(c.h, chillToC))}}
 		list = append(list, Case{p.Name, HalfSpace, source, "°C", chillFromC - (chillFromC-chillToC)*c.theta, 0.005, p.at(model.Place{UpM: half - c.x}, c.t), p})
 	}
@@ -167,6 +167,22 @@ func chainCases() []Case {
 		{"slab 50 mm: peak of the centre during the rest", Chain, source, "°C", 73.7885034, 0.005, peak(long), long},
 		{"sphere 70 mm: peak of the centre during the rest", Chain, source, "°C", 113.9605908, 0.005, peak(b), b},
 	}
+}
+
+// filmed words a film coefficient, W/(m²·K); an endless one holds the surface.
+func filmed(h float64) string {
+	if math.IsInf(h, 1) {
+		return "surface held"
+	}
+	return fmt.Sprintf("film %g W/(m²·K)", h)
+}
+
+// biot words a Biot number; an endless one holds the surface.
+func biot(bi float64) string {
+	if math.IsInf(bi, 1) {
+		return "surface held"
+	}
+	return fmt.Sprintf("Bi %g", bi)
 }
 
 func limitCases() []Case {

@@ -21,7 +21,7 @@ type spheroidCase struct {
 func (c *spheroidCase) problem(fo float64) (p Problem, endS float64) {
 	const a = 0.03
 	endS = fo * a * a / alpha
-	return Problem{fmt.Sprintf("spheroid 1:%g, Bi %g", c.ratio, c.bi), spheroid(c.ratio*a, a, chillFromC, tested),
+	return Problem{fmt.Sprintf("spheroid 1:%g, %s", c.ratio, biot(c.bi)), spheroid(c.ratio*a, a, chillFromC, tested),
 		[]model.Step{step("chill", endS, exposure(c.bi*tested.KWmK/a, chillToC))}}, endS
 }
 

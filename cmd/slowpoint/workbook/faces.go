@@ -54,6 +54,7 @@ func (r *reader) readFaces() {
 			duration = p.own[Key(stepName)].DurationS
 		}
 		f.course = r.exposure(l, &f.Exposure, duration)
+		l.quick(&f.Exposure, s)
 		r.hang(l, pr, s, f, prodName)
 	}
 }

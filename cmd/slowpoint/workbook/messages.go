@@ -137,6 +137,8 @@ var (
 	faceWrong      = saying{"is not a face that differs on the shape {1}; its faces are {2}", "correct the face, or take the row out"}
 	faceNone       = saying{"is a face, but the shape {1} has one surface", "take the row out"}
 	faceTwice      = saying{"is there twice for this step; the first is in row {1}", "keep one of the rows"}
+	filmOfWater    = saying{"is read as {1}, more than air takes from food in the stage {2} (up to {3} W/m²·K): only water, ice slurry, sprays or plates reach it", "check the digits and the unit; if it is water or a plate, say so in Equipment"}
+	processNamed   = saying{"names a process that cannot be calculated: {1}", "{2}; where nothing of the kind is done, word it otherwise"}
 	processRefused = saying{"cannot be calculated: {1}", "{2}"}
 	otherProcess   = saying{"is a product of the process {1}, not of this one", "correct the product or the process"}
 	layerNotWhole  = saying{"is not the number of a layer", "number the layers 1, 2, 3 … from the top"}

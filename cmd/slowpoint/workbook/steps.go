@@ -3,8 +3,10 @@ package workbook
 import (
 	"strconv"
 	"strings"
+	"unicode"
 
 	"slowpoint/model"
+	"slowpoint/model/cell"
 )
 
 // process is the chain of steps that products share.
@@ -160,11 +162,48 @@ func (r *reader) readStep(l *Line) *step {
 	s.UntilC = l.Number("Until slowest point reaches")
 	s.course = r.exposure(l, &s.Exposure, s.DurationS)
 	s.Equipment, s.Load, s.Note = l.Words("Equipment"), l.Words("Load"), l.Words("Note")
+	l.quick(&s.Exposure, s)
 	if s.Equipment != "" {
 		l.refused("Equipment", s.Equipment)
 	}
+	l.refusedName("Step", s.Name)
+	l.refusedName("Process", l.Entry("Process").Text)
+	if no := processIn(s.Note, true); no != nil {
+		l.Remark(cell.Warning, "Note", s.Note, processNamed, no.Why, no.Instead)
+	}
 	s.AltitudeM = r.plan.AltitudeM
 	return s
+}
+
+// mostOfAir is the highest film coefficient that air of a chiller, a freezer or a room gives, W/(m²·K): published totals for blown air end
+// at 48, see publishedFilms; the rest is room (common practice, no source).
+const mostOfAir = 60
+
+// quicker are beginnings of words for what takes heat faster than air does.
+var quicker = []string{"water", "bath", "ice", "icy", "slurry", "spray", "plate", "brine", "immers", "sink", "shower", "drench", "hydro", "jacket", "contact",
+	"glycol", "nitrogen", "cryo", "co2", "imping"}
+
+// quick warns of a film coefficient that air does not reach, where food cools or stands and nothing speaks of water, plates or sprays.
+func (l *Line) quick(x *model.Exposure, s *step) {
+	inAir := x.Surface == model.StillAir || x.Surface == model.MovingAir
+	if x.FilmW == nil || *x.FilmW <= mostOfAir || usualFilm.outside(*x.FilmW) || s.Stage == nil || x.Surface != model.Film && !inAir {
+		return
+	}
+	switch s.Stage {
+	case model.Cool, model.Rest, model.Store, model.HoldCold, model.Freeze:
+	default:
+		return
+	}
+	said := Key(s.Name + " " + s.Equipment + " " + s.Note)
+	for _, w := range strings.FieldsFunc(said, func(c rune) bool { return !unicode.IsLetter(c) && !unicode.IsDigit(c) }) {
+		for _, q := range quicker {
+			if !inAir && strings.HasPrefix(w, q) && w != "plated" {
+				return
+			}
+		}
+	}
+	c := l.t.sheet.Column("Film coefficient")
+	l.Remark(cell.Warning, "Film coefficient", l.Entry("Film coefficient").Text, filmOfWater, c.shown(*x.FilmW), s.Stage.Name, strconv.Itoa(mostOfAir))
 }
 
 // stage reads the word of one stage.
@@ -185,29 +224,72 @@ func (l *Line) stage(heading string) *model.Stage {
 
 // refused tells whether a word names a process that conduction does not describe, and says so.
 func (l *Line) refused(heading, typed string) bool {
-	words := strings.FieldsFunc(Key(typed), func(c rune) bool { return !('a' <= c && c <= 'z') })
-	said := " " + strings.Join(words, " ") + " "
-	for _, no := range model.Refusals {
-		for _, w := range strings.Split(no.Words, ", ") {
-			i := strings.Index(said, " "+w)
-			if i < 0 {
-				continue
-			}
-			rest := strings.Fields(said[i+1+len(w):])
-			if len(rest) > 0 && harmless[rest[0]] || !strings.HasPrefix(said[i+1+len(w):], " ") && !strings.HasPrefix(said[i+1+len(w):], "s ") && !strings.HasPrefix(said[i+1+len(w):], "d ") {
-				continue
-			}
-			l.Fault(heading, typed, processRefused, no.Why, no.Instead)
-			return true
-		}
+	if no := processIn(typed, false); no != nil {
+		l.Fault(heading, typed, processRefused, no.Why, no.Instead)
+		return true
 	}
 	return false
 }
 
+// refusedName does the same for what a process or a step is called. Baking is a warning there: a pie or a pasta bake is called so too.
+func (l *Line) refusedName(heading, typed string) {
+	switch no := processIn(typed, true); {
+	case no == nil:
+	case strings.Contains(no.Words, "baking"):
+		l.Remark(cell.Warning, heading, typed, processNamed, no.Why, no.Instead)
+	default:
+		l.Fault(heading, typed, processRefused, no.Why, no.Instead)
+	}
+}
+
+// processIn finds the process among model.Refusals that a text names; nil if there is none. Blanks and hyphens within a word do not matter.
+// In a name or a note, one that is ruled out or that came before is passed over: not microwaved, standing after the fryer.
+func processIn(typed string, passing bool) *model.Refusal {
+	if typed == "" {
+		return nil
+	}
+	words := strings.FieldsFunc(Key(typed), func(c rune) bool { return !('a' <= c && c <= 'z') })
+	for k := range words {
+		if passing && k > 0 && (aside[words[k-1]] || words[k-1] == "the" && k > 1 && aside[words[k-2]]) {
+			continue
+		}
+		said := words[k]
+		for j := k; ; {
+			if no := refusedWords[said]; no != nil && !(j+1 < len(words) && harmless[words[j+1]]) {
+				return no
+			}
+			if j++; j == len(words) || len(said) > longestRefused {
+				break
+			}
+			said += words[j]
+		}
+	}
+	return nil
+}
+
+// refusedWords are the words of model.Refusals without blanks, and what they become in a sentence: microwaves, microwaved, microwaving.
+var refusedWords, longestRefused = func() (map[string]*model.Refusal, int) {
+	all, longest := map[string]*model.Refusal{}, 0
+	for i := range model.Refusals {
+		for _, w := range strings.Split(model.Refusals[i].Words, ", ") {
+			w = strings.ReplaceAll(w, " ", "")
+			for _, form := range []string{w, w + "s", w + "d", w + "ed", strings.TrimSuffix(w, "e") + "ing"} {
+				all[form] = &model.Refusals[i]
+				longest = max(longest, len(form))
+			}
+		}
+	}
+	return all, longest
+}()
+
+// aside are words before a word of model.Refusals that rule it out, or put it before or after what is typed.
+var aside = map[string]bool{"no": true, "not": true, "non": true, "never": true, "without": true, "after": true, "before": true, "from": true, "for": true, "of": true}
+
 // harmless words behind a word of model.Refusals name packs and tools, not the process: a vacuum bag, a baking tray.
 var harmless = map[string]bool{"bag": true, "bags": true, "pack": true, "packs": true, "packed": true, "packaged": true, "packaging": true, "pouch": true, "pouches": true,
 
-	"sealed": true, "sealer": true, "wrapped": true, "tray": true, "trays": true, "sheet": true, "sheets": true, "paper": true, "tin": true, "tins": true, "dish": true, "parchment": true}
+	"sealed": true, "skin": true, "tumble": true, "tumbled": true, "tumbler": true, "tumbling": true, "filled": true, "filler": true, "filling": true,
+	"meal": true, "meals": true, "safe": true, "proof": true, "sealing": true, "packing": true, "sealer": true, "wrapped": true, "tray": true, "trays": true, "sheet": true, "sheets": true, "paper": true, "tin": true, "tins": true, "dish": true, "parchment": true}
 
 // exposure reads the surroundings columns of Steps or Faces. The course is nil if none is named or it is not known.
 func (r *reader) exposure(l *Line, x *model.Exposure, durationS float64) *course {
