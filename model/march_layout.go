@@ -42,13 +42,15 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 		crowd = roundCrowd
 	}
 	n := lineNodes
+	sharp := s.front && s.holds()
 	for _, l := range laws {
-		if l.sharp() {
-			n = sharpNodes
-		}
+		sharp = sharp || l.sharp()
+	}
+	if sharp {
+		n = sharpNodes
 	}
 	g := newLineGrid(s.product, kind, r, e.volumes(n), crowd)
-	m := newLineMarch(g, laws)
+	m := newLineMarch(g, laws, sharp)
 	m.lower, m.upper = s.faces[0][0], s.faces[0][1]
 	m.fill(s.product.StartC)
 	f.state, f.mesh = m, newLineMesh(g)
@@ -243,7 +245,19 @@ func (s *solver) lawsOf() []*law {
 // lineNodes is how many volumes a half axis gets at first, cutNodes how many by the number of axes where a front moves through more than one.
 const lineNodes = 42
 
-// sharpNodes is how many a half axis gets whose ice forms all but at one temperature, so that a volume turns at once.
+// holds tells whether a face is kept at its medium in any step: a front of ice leaves it faster than volumes can spread it.
+func (s *solver) holds() bool {
+	for i := range s.steps {
+		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
+			if e.Surface == Held {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// sharpNodes is how many a half axis gets whose ice forms all but at one temperature, or whose face is held, so that a volume turns at once.
 const sharpNodes = 84
 
 // cutNodes is how many a half axis gets where a front moves through more than one, and how they crowd: in three directions fewer where the two

@@ -155,7 +155,8 @@ type lineMarch struct {
 	fresh                     bool       // no step since the surroundings changed: nothing to guess from
 }
 
-func newLineMarch(g *lineGrid, laws []*law) *lineMarch {
+// newLineMarch makes the march of a line; sharp: a volume turns at once when the front passes its node.
+func newLineMarch(g *lineGrid, laws []*law, sharp bool) *lineMarch {
 	m := &lineMarch{lineGrid: g, laws: laws}
 	n := len(g.x)
 	for _, s := range []*[]float64{&m.spread, &m.fore, &m.aft, &m.h, &m.u, &m.rate, &m.c, &m.slope, &m.uRate, &m.rate2, &m.c2, &m.slope2, &m.uRate2,
@@ -163,10 +164,9 @@ func newLineMarch(g *lineGrid, laws []*law) *lineMarch {
 		*s = make([]float64, n)
 	}
 	for _, p := range g.parts {
-		if laws[g.food[p[0]]].sharp() {
-			continue
+		if !sharp {
+			m.within(p)
 		}
-		m.within(p)
 	}
 	return m
 }
