@@ -329,7 +329,6 @@ func (c *checker) exposure(st *Step, e *Exposure, before float64) {
 	}
 }
 
-// radiation looks at Radiating temperature and Emissivity.
 // boilsWithinK is by how much a thermometer in boiling water or steam may be off, K.
 const boilsWithinK = 0.5
 
@@ -394,6 +393,7 @@ func (c *checker) vapour(st *Step, e *Exposure) {
 // hottestWallsC is how hot what the food sees may be, °C: heating elements and flames are hotter, but a food does not see them alone.
 const hottestWallsC = 400
 
+// radiation looks at Radiating temperature and Emissivity.
 func (c *checker) radiation(e *Exposure) {
 	if e.RadiatingC == nil && e.Emissivity == nil {
 		return

@@ -234,15 +234,7 @@ func (l *law) heat(c float64) float64 {
 	return h
 }
 
-// thin gives the slope of the temperature by the heat content, m³·K/J.
-func (l *law) thin(h float64) float64 {
-	r, x, per := l.row(h)
-	x = min(x, 1)
-	a := &r.t
-	return (a[1] + x*(2*a[2]+x*3*a[3])) * per
-}
-
-// sharp tells whether ice forms all but at one temperature: half of what leaves over ten degrees leaves in the first twentieth of one.
-func (l *law) sharp() bool {
-	return l.heat(l.zeroC-0.05) < 0.5*l.heat(l.zeroC-10)
-}
+// sharp tells whether ice forms all but at one temperature, as in water: half of what leaves over ten degrees leaves in the first 0.05 K. Marches that
+// spread it over volumes find nothing there if the food starts at its freezing point and a face is held; food that freezes from -0.06 °C on is not
+// sharp.
+func (l *law) sharp() bool { return l.heat(l.zeroC-0.05) < 0.5*l.heat(l.zeroC-10) }

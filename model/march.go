@@ -26,8 +26,6 @@ type marcher interface {
 	firstS() float64
 	// span gives the coldest and hottest temperature of the state, °C.
 	span() (low, high float64)
-	// keepsHeat gives the laws of the nodes if it keeps heat contents in a track; nil for temperatures.
-	keepsHeat() []*law
 	// touches gives the nodes that a skin lies on.
 	touches(k *skin) []int
 	// save puts a copy of the state aside, tau s into the step; restore takes it back.
@@ -174,8 +172,8 @@ func (s *solver) outside(low, high float64) {
 }
 
 // mostKept is how many numbers a track may keep: 300 MB. A march that kept more than againKept is not made again: with more nodes and shorter
-// steps it could be refused for what it keeps, and would take many seconds; nor is one with wet faces that took more than againSteps, through a course of hundreds of corners. What is left is
-// stated.
+// steps it could be refused for what it keeps, and would take many seconds; nor is one with wet faces that took more than againSteps, through a
+// course of hundreds of corners. What is left is stated.
 const mostKept, againKept, againSteps = 4e7, 1e7, 4000
 
 // leastStepS is the shortest step of a march, s: one that cannot be solved is not made shorter than this.

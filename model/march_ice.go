@@ -167,16 +167,15 @@ func (v *iceVolumes) within(h, guess, at, near float64) (u, slope float64) {
 	lo, hi := at-near, at+near
 	u = max(lo, min(hi, guess))
 	for range 50 {
-		g0, h0 := v.law.byU.sums(u - near)
-		g1, h1 := v.law.byU.sums(u + near)
-		off := g1 - g0 - 2*near*h
+		mean, byU, _ := v.law.byU.mean(u, near)
+		off := mean - h
 		if off > 0 {
 			hi = u
 		} else {
 			lo = u
 		}
-		slope = 2 * near / (h1 - h0)
-		next := u - off/(h1-h0)
+		slope = 1 / byU
+		next := u - off*slope
 		if !(next >= lo && next <= hi) {
 			next = (lo + hi) / 2
 		}

@@ -7,21 +7,7 @@ import (
 
 // icyFood freezes from -1 °C on: 230 kJ/kg of ice, of the size of lean meat's (made up for the test).
 func icyFood() *Material {
-	const tf, rho, cu, cf, latent, ku, kf = -1.0, 1050.0, 3500.0, 1950.0, 230e3, 0.48, 1.5
-	at := tf
-	return &Material{Name: "test food", Source: "input of the test", Composed: true, FreezingC: &at, LowC: -60, HighC: 150, Waterless: true,
-		Props: func(c float64) Properties {
-			if c >= tf {
-				return Properties{ku, rho, cu}
-			}
-			return Properties{ku + (kf-ku)*(1-tf/c), rho, cf - latent*tf/(c*c)}
-		},
-		EnthalpyJkg: func(c float64) float64 {
-			if c >= tf {
-				return cu * (c - tf)
-			}
-			return cf*(c-tf) - latent*(1-tf/c)
-		}}
+	return iceLaw{1050, 3500, 1950, 230e3, -1, 0.48, 1.5}.food("test food", "input of the test", 150)
 }
 
 // A volume through which a front goes is read as the mean over what lies in it: the mean heat content of Kirchhoff integrals from u-near to

@@ -18,7 +18,6 @@ func (s *solver) newMarched(e effort) *marched {
 		s.layLine(f, laws, e)
 	}
 	f.track.n = len(f.mesh.weights())
-	f.track.laws = f.state.keepsHeat()
 	if m, ok := f.state.(*spaceMarch); ok && m.ice != nil {
 		f.track.ice = laws[0]
 	}
@@ -42,15 +41,13 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 		crowd = roundCrowd
 	}
 	n := lineNodes
-	sharp := s.front && s.holds()
 	for _, l := range laws {
-		sharp = sharp || l.sharp()
-	}
-	if sharp {
-		n = sharpNodes
+		if s.front && l.sharp() {
+			n = sharpNodes
+		}
 	}
 	g := newLineGrid(s.product, kind, r, e.volumes(n), crowd)
-	m := newLineMarch(g, laws, sharp)
+	m := newLineMarch(g, laws)
 	m.lower, m.upper = s.faces[0][0], s.faces[0][1]
 	m.fill(s.product.StartC)
 	f.state, f.mesh = m, newLineMesh(g)
@@ -242,22 +239,10 @@ func (s *solver) lawsOf() []*law {
 	return s.laws
 }
 
-// lineNodes is how many volumes a half axis gets at first, cutNodes how many by the number of axes where a front moves through more than one.
+// lineNodes is how many volumes a half axis gets at first.
 const lineNodes = 42
 
-// holds tells whether a face is kept at its medium in any step: a front of ice leaves it faster than volumes can spread it.
-func (s *solver) holds() bool {
-	for i := range s.steps {
-		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
-			if e.Surface == Held {
-				return true
-			}
-		}
-	}
-	return false
-}
-
-// sharpNodes is how many a half axis gets whose ice forms all but at one temperature, or whose face is held, so that a volume turns at once.
+// sharpNodes is how many a half axis gets whose ice forms all but at one temperature.
 const sharpNodes = 84
 
 // cutNodes is how many a half axis gets where a front moves through more than one, and how they crowd: in three directions fewer where the two
@@ -271,11 +256,10 @@ func (s *solver) cutNodes(a int) (n int, crowd float64) {
 	case s.kinds[0] == planeFull:
 		most = 14
 	}
-	mean, thin := 1.0, s.radii[a]
-	for i := range s.used {
-		mean *= s.radii[i]
-		thin = min(thin, s.radii[i])
+	mean := 1.0
+	for _, r := range s.radii[:s.used] {
+		mean *= r
 	}
 	mean = math.Pow(mean, 1/float64(s.used))
-	return int(math.Round(most * max(0.75, min(1.25, math.Sqrt(s.radii[a]/mean))))), cutCrowd + 0.7*math.Log(s.radii[a]/thin)
+	return int(math.Round(most * max(0.75, min(1.25, math.Sqrt(s.radii[a]/mean))))), cutCrowd + 0.7*math.Log(s.radii[a]/s.thinnest())
 }

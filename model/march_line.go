@@ -146,7 +146,6 @@ type lineMarch struct {
 	h1, h2, u1, u2            []float64
 	b, f0, f1, f2             []float64  // W/m²
 	mean, meanU, meanF, meanA []float64  // of the last look: mean heat content, its slopes by u, and by that of the node before and of the node after
-	mid, wide                 []float64  // of the last look: u in the middle of a volume, and half of the u in it
 	temp, tempU               []float64  // of the last look, at faces and joints: temperature, its slope by u
 	low, diag, up, delta      []float64  // the three diagonals and the right side
 	qs                        [2]float64 // flow over each face at the end of the last solve, W/m²: of the equations that were solved, so that what comes in is what is gained
@@ -155,16 +154,15 @@ type lineMarch struct {
 	fresh                     bool       // no step since the surroundings changed: nothing to guess from
 }
 
-// newLineMarch makes the march of a line; sharp: a volume turns at once when the front passes its node.
-func newLineMarch(g *lineGrid, laws []*law, sharp bool) *lineMarch {
+func newLineMarch(g *lineGrid, laws []*law) *lineMarch {
 	m := &lineMarch{lineGrid: g, laws: laws}
 	n := len(g.x)
 	for _, s := range []*[]float64{&m.spread, &m.fore, &m.aft, &m.h, &m.u, &m.rate, &m.c, &m.slope, &m.uRate, &m.rate2, &m.c2, &m.slope2, &m.uRate2,
-		&m.h1, &m.h2, &m.u1, &m.u2, &m.b, &m.f0, &m.f1, &m.f2, &m.mean, &m.meanU, &m.meanF, &m.meanA, &m.mid, &m.wide, &m.temp, &m.tempU, &m.low, &m.diag, &m.up, &m.delta} {
+		&m.h1, &m.h2, &m.u1, &m.u2, &m.b, &m.f0, &m.f1, &m.f2, &m.mean, &m.meanU, &m.meanF, &m.meanA, &m.temp, &m.tempU, &m.low, &m.diag, &m.up, &m.delta} {
 		*s = make([]float64, n)
 	}
 	for _, p := range g.parts {
-		if !sharp {
+		if !laws[g.food[p[0]]].sharp() { // else a volume turns at once, when the front passes its node
 			m.within(p)
 		}
 	}
@@ -214,8 +212,8 @@ var (
 	trErrorK = (-3*trGamma*trGamma + 4*trGamma - 2) / (12 * (2 - trGamma))
 )
 
-// leastSpread is the least half spread of u in a volume, W/m: of some thousandths of a degree.
-const leastSpread = 1e-3
+// leastSpread is the least half spread of u in a volume, W/m: of some millionths of a degree.
+const leastSpread = 1e-6
 
 // look reads mean heat contents of the volumes with their slopes, and temperatures where flows need them: at faces and joints.
 func (m *lineMarch) look(u []float64) {
@@ -233,7 +231,6 @@ func (m *lineMarch) look(u []float64) {
 			if d < leastSpread {
 				d, sign = leastSpread, 0
 			}
-			m.mid[i], m.wide[i] = c, d
 			mean, slope, wide := l.mean(c, d)
 			wide *= sign
 			m.mean[i], m.meanF[i], m.meanA[i] = mean, slope*m.fore[i]-wide, slope*m.aft[i]+wide
@@ -307,7 +304,7 @@ func (m *lineMarch) begin(tau float64) {
 	}
 	m.q0 = m.qs[0] + m.qs[1]
 	m.fresh = true
-	m.temperatures(m.u, m.rate, m.c, m.slope, m.uRate)
+	m.temperatures(m.u, m.rate, m.c, m.slope, m.uRate, tau)
 }
 
 // Newton's method ends with a correction this small, K, or, where nothing freezes or melts, with one whose square is.
@@ -317,44 +314,7 @@ const newtonK, newtonSmoothK = 1e-4, 5e-3
 // food that freezes, so that temperatures come out large.
 const unfrozenK = 0.2
 
-// moved gives u moved by d, which was found with the slope of the heat content at the last look. Where ice forms or melts, slopes beside each other are
-// unlike by hundreds of times: there it goes no further than takes the heat that the slope says.
-func (m *lineMarch) moved(i int, u, d float64) float64 {
-	c, wide := m.mid[i], m.wide[i]
-	if d == 0 || min(c, c+d) > wide || math.Abs(d) < straightMove*(math.Abs(c)-wide) {
-		return u + d
-	}
-	l := m.laws[m.food[i]].byU
-	heat := m.meanU[i] * d
-	at := func(d float64) float64 {
-		h, _, _ := l.mean(c+d, wide)
-		return (h-m.mean[i])/heat - 1
-	}
-	lo, hi := 0.0, d
-	off := at(hi)
-	if off < 1 {
-		return u + d
-	}
-	below, x := -1.0, 0.0
-	for try := 0; try < 12; try++ { // false position, each end's weight halved when the other stays (Illinois)
-		x = (lo*off - hi*below) / (off - below)
-		if y := at(x); y > 0 {
-			hi, off, below = x, y, below/2
-		} else {
-			lo, below, off = x, y, off/2
-		}
-		if math.Abs(hi-lo) < 0.1*math.Abs(lo) {
-			break
-		}
-	}
-	return u + x
-}
-
-// straightMove is how far u may move by its own size with the slope at hand where there is ice.
-const straightMove = 0.02
-
 // solve finds the u of w·h(u) = b + a·F(u) at tau, from u on, and h; it says whether it did.
-
 func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
 	n := len(u)
 	for try := 0; try < 20; try++ {
@@ -396,9 +356,8 @@ func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
 		m.factor(m.delta)
 		worst, bent := 0.0, false
 		for i, d := range m.delta {
-			to := m.moved(i, u[i], d)
-			bent = bent || to != u[i]+d || m.mid[i] < m.wide[i]
-			u[i] = to
+			u[i] += d
+			bent = bent || u[i] < 0
 			if d = math.Abs(d) * max(1/unfrozenK, m.meanU[i]*heatCounts); !(d <= worst) {
 				if worst = d; math.IsNaN(d) {
 					return false
@@ -471,7 +430,7 @@ func (m *lineMarch) try(tau, d float64) float64 {
 	copy(m.u1, m.u)
 	if !m.fresh {
 		for i, r := range m.uRate {
-			m.u1[i] = m.moved(i, m.u[i], trGamma*d*r)
+			m.u1[i] = m.u[i] + trGamma*d*r
 		}
 	}
 	for i := range m.b {
@@ -486,7 +445,7 @@ func (m *lineMarch) try(tau, d float64) float64 {
 	for i := range m.b {
 		m.f1[i] = (m.w[i]*m.h1[i] - m.b[i]) / a
 		m.b[i] = m.w[i] * (a1*m.h1[i] - (a1-1)*m.h[i])
-		m.u2[i] = m.moved(i, m.u1[i], (m.u1[i]-m.u[i])*(1/trGamma-1))
+		m.u2[i] = m.u[i] + (m.u1[i]-m.u[i])/trGamma
 	}
 	if !m.solve(m.u2, m.h2, m.b, a, tau+d) {
 		return math.Inf(1)
@@ -498,6 +457,7 @@ func (m *lineMarch) try(tau, d float64) float64 {
 		m.f2[i] = (m.w[i]*m.h2[i] - m.b[i]) / a
 		m.delta[i] = c * (m.f0[i]/trGamma - m.f1[i]/(trGamma*(1-trGamma)) + m.f2[i]/(1-trGamma))
 	}
+	m.unheld(m.delta) // no error
 	m.back(m.delta)
 	worst := 0.0
 	for i, e := range m.delta {
@@ -512,7 +472,7 @@ func (m *lineMarch) try(tau, d float64) float64 {
 		m.rate2[i] = f / m.w[i]
 	}
 	m.unheld(m.rate2)
-	m.temperatures(m.u2, m.rate2, m.c2, m.slope2, m.uRate2)
+	m.temperatures(m.u2, m.rate2, m.c2, m.slope2, m.uRate2, tau+d)
 	if m.fresh {
 		return worst
 	}
@@ -522,10 +482,13 @@ func (m *lineMarch) try(tau, d float64) float64 {
 		kept := at.c0*m.c[i] + at.s0*m.slope[i] + at.c1*m.c2[i] + at.s1*m.slope2[i]
 		worst = max(worst, math.Abs(c-kept)*betweenCounts)
 	}
+	if math.IsNaN(worst) {
+		return math.Inf(1)
+	}
 	return worst
 }
 
-// unheld leaves no rate to faces that are kept at their medium.
+// unheld leaves no rate and no error to faces that are kept at their medium.
 func (m *lineMarch) unheld(rate []float64) {
 	for side, s := range m.skins {
 		if s != nil && s.held {
@@ -561,8 +524,9 @@ func (m *lineMarch) keep(k *track, t float64) {
 	copy(slope, m.slope)
 }
 
-// temperatures fills c with the temperatures at u and slope with what rate, W/m³, makes of them in a second.
-func (m *lineMarch) temperatures(u, rate, c, slope, uRate []float64) {
+// temperatures fills c with the temperatures at u and slope with what rate, W/m³, makes of them in a second, tau s into the step; held faces go as
+// their media do.
+func (m *lineMarch) temperatures(u, rate, c, slope, uRate []float64, tau float64) {
 	m.look(u)
 	n := len(c)
 	for i := range c {
@@ -573,6 +537,8 @@ func (m *lineMarch) temperatures(u, rate, c, slope, uRate []float64) {
 		if s != nil && s.held {
 			i := (n - 1) * side
 			m.diag[i], m.up[i], m.low[i] = 1, 0, 0
+			from := max(0, tau-1)
+			m.delta[i] = m.heldAt(side, i, from+1) - m.heldAt(side, i, from)
 		}
 	}
 	m.factor(m.delta)
@@ -623,6 +589,7 @@ func (m *lineMarch) save(float64) {
 	for _, x := range [][]float64{m.h, m.rate, m.u, m.c, m.slope, m.uRate} {
 		m.kept = append(m.kept, x...)
 	}
+	m.kept = append(m.kept, m.q0, m.inJ)
 }
 
 func (m *lineMarch) restore() {
@@ -630,6 +597,7 @@ func (m *lineMarch) restore() {
 	for i, x := range [][]float64{m.h, m.rate, m.u, m.c, m.slope, m.uRate} {
 		copy(x, m.kept[i*n:])
 	}
+	m.q0, m.inJ = m.kept[len(m.kept)-2], m.kept[len(m.kept)-1]
 }
 
 func (m *lineMarch) touches(k *skin) (nodes []int) {
@@ -640,5 +608,3 @@ func (m *lineMarch) touches(k *skin) (nodes []int) {
 	}
 	return nodes
 }
-
-func (m *lineMarch) keepsHeat() []*law { return nil }

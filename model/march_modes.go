@@ -551,5 +551,3 @@ func (m *modesMarch) restore() {
 	m.linearize(m.savedAt)
 	m.begin(m.savedAt)
 }
-
-func (m *modesMarch) keepsHeat() []*law { return nil }

@@ -22,19 +22,7 @@ func drawnFollowing(t *rapid.T, freezes bool) *Material {
 	tf, rho := u("freezing point", -3, -0.6), u("rho", 950, 1100)
 	cu, cf, latent := u("c", 3000, 3900), u("c frozen", 1700, 2200), u("latent heat", 120e3, 260e3)
 	ku, kf := u("k", 0.4, 0.55), u("k frozen", 1.1, 1.8)
-	return &Material{Name: "drawn", Source: "drawn by the test", Composed: true, FreezingC: &tf, LowC: -60, HighC: 150, Waterless: true,
-		Props: func(c float64) Properties {
-			if c >= tf {
-				return Properties{ku, rho, cu}
-			}
-			return Properties{ku + (kf-ku)*(1-tf/c), rho, cf - latent*tf/(c*c)}
-		},
-		EnthalpyJkg: func(c float64) float64 {
-			if c >= tf {
-				return cu * (c - tf)
-			}
-			return cf*(c-tf) - latent*(1-tf/c)
-		}}
+	return iceLaw{rho, cu, cf, latent, tf, ku, kf}.food("drawn", "drawn by the test", 150)
 }
 
 // ownStep is a step in films, W/(m²·K), to one medium, °C.

@@ -80,7 +80,6 @@ type spaceMarch struct {
 
 	h, f0          []float64 // heat contents, J/m³, and their rates, J/(m³·s)
 	y1, y2, f, u   []float64
-	slope          []float64 // by node: slope of the temperature by the heat content
 	kept           []float64
 	conducts, thin float64       // in this step of the chain: fastest rate of decay by conduction, 1/s; largest slope of temperature by heat
 	steep          [3][2]float64 // by face: largest slope of the flow by temperature at the last rates, W/(m²·K)
@@ -88,7 +87,7 @@ type spaceMarch struct {
 
 func newSpaceMarch(axes [3]*spaceAxis, l *law, startC float64) *spaceMarch {
 	m := &spaceMarch{axes: axes, law: l, n: axes[0].n * axes[1].n * axes[2].n}
-	for _, s := range []*[]float64{&m.h, &m.f0, &m.y1, &m.y2, &m.f, &m.u, &m.slope} {
+	for _, s := range []*[]float64{&m.h, &m.f0, &m.y1, &m.y2, &m.f, &m.u} {
 		*s = make([]float64, m.n)
 	}
 	for i := range m.h {
@@ -337,7 +336,8 @@ func (m *spaceMarch) try(tau, d float64) float64 {
 // thinAt is the slope of the temperature of node i by its heat content h at the last rates, m³·K/J.
 func (m *spaceMarch) thinAt(h float64, i int) float64 {
 	if m.ice == nil {
-		return m.law.thin(h)
+		_, thin := m.law.warmth(h)
+		return thin
 	}
 	_, du := m.ice.invert(h, m.u[i], i)
 	_, dt := m.law.byU.temperature(m.u[i])
@@ -354,14 +354,16 @@ func (m *spaceMarch) accept(k *track, t float64) {
 }
 
 func (m *spaceMarch) keep(k *track, t float64) {
-	h, slope := k.add(t)
+	c, slope := k.add(t)
 	if m.ice != nil {
-		copy(h, m.u)
+		copy(c, m.u)
 		m.ice.slopes(m.h, m.u, m.f0, slope)
 		return
 	}
-	copy(h, m.h)
-	copy(slope, m.f0)
+	for i, h := range m.h {
+		c[i], slope[i] = m.law.warmth(h)
+		slope[i] *= m.f0[i]
+	}
 }
 
 // firstS is what a few stages reach.
@@ -674,14 +676,6 @@ func (m *spaceMarch) touches(k *skin) (nodes []int) {
 		}
 	}
 	return nodes
-}
-
-func (m *spaceMarch) keepsHeat() []*law {
-	out := make([]*law, m.n)
-	for i := range out {
-		out[i] = m.law
-	}
-	return out
 }
 
 func (m *spaceMesh) neighbours(j int, do func(k int)) {

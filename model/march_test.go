@@ -26,23 +26,30 @@ func filmTo(w, c float64) Exposure {
 	return Exposure{Surface: Film, FilmW: &w, Medium: Course{TimesS: []float64{0}, C: []float64{c}}}
 }
 
-// freezingFood is the food of problem H: an enthalpy law that is given as a formula.
-func freezingFood() *Material {
-	const rho, cu, cf, lw, tf, ku, kf = 1050, 3500, 1900, 0.68 * 333500, -1.1, 0.48, 1.55
-	point := tf
-	return &Material{Name: "test food", Source: "input of the problem", FreezingC: &point, Composed: true, LowC: -60, HighC: 100,
+// iceLaw is a food whose ice forms over a range, as formulas: below its freezing point tf, °C, the share 1 - tf/T of its latent heat, J/kg, has left,
+// and its conductivity has gone as far from the unfrozen to the frozen one.
+type iceLaw struct{ rho, cu, cf, latent, tf, ku, kf float64 }
+
+// food gives the material of a law, in which highC stands as its hottest temperature, °C.
+func (l iceLaw) food(name, source string, highC float64) *Material {
+	return &Material{Name: name, Source: source, Composed: true, FreezingC: &l.tf, LowC: -60, HighC: highC, Waterless: true,
 		Props: func(c float64) Properties {
-			if c >= tf {
-				return Properties{ku, rho, cu}
+			if c >= l.tf {
+				return Properties{l.ku, l.rho, l.cu}
 			}
-			return Properties{ku + (kf-ku)*(1-tf/c), rho, cf - lw*tf/(c*c)}
+			return Properties{l.ku + (l.kf-l.ku)*(1-l.tf/c), l.rho, l.cf - l.latent*l.tf/(c*c)}
 		},
 		EnthalpyJkg: func(c float64) float64 {
-			if c >= tf {
-				return cu * (c - tf)
+			if c >= l.tf {
+				return l.cu * (c - l.tf)
 			}
-			return cf*(c-tf) - lw*(1-tf/c)
+			return l.cf*(c-l.tf) - l.latent*(1-l.tf/c)
 		}}
+}
+
+// freezingFood is the food of problem H: an enthalpy law that is given as a formula.
+func freezingFood() *Material {
+	return iceLaw{1050, 3500, 1900, 0.68 * 333500, -1.1, 0.48, 1.55}.food("test food", "input of the problem", 100)
 }
 
 // wetRadiating is the surface of problem I with its own law of mass transfer.
@@ -173,10 +180,13 @@ func TestMarchRestoresItsState(t *testing.T) {
 	}}
 	walls := 340.0
 	oven := Exposure{Surface: StillAir, Medium: Course{TimesS: []float64{0}, C: []float64{240}}, RadiatingC: &walls, Wet: ptr(false)}
-	for _, shape := range []*Shape{Slab, Brick, Spheroid, LayeredSlab} {
+	for _, shape := range []*Shape{Slab, Brick, Spheroid, LayeredSlab, Bar} {
 		t.Run(shape.Name, func(t *testing.T) {
 			p := Product{Name: "P", Shape: shape, Food: food, StartC: 6, Size: Size{ThicknessM: 0.061, WidthM: 0.083, LengthM: 0.12, DiameterM: 0.072}}
-			if shape == LayeredSlab {
+			switch shape {
+			case Bar: // with ice
+				p.Food, p.StartC = icyFood(), -4
+			case LayeredSlab:
 				p.Food, p.Layers = nil, []Layer{{Food: food, ThicknessM: 0.02, BelowM2KW: 0.004}, {Food: food, ThicknessM: 0.041}}
 			}
 			steps := []Step{{Name: "roast", Stage: Cook, DurationS: 5000, Exposure: oven}}
@@ -205,7 +215,7 @@ func TestMarchRestoresItsState(t *testing.T) {
 			f.track.all(f.track.find(tau), want)
 			step(1200) // the walls heat the surface more and more steeply
 			f.state.restore()
-			again := &track{n: f.track.n, laws: f.track.laws}
+			again := &track{n: f.track.n, ice: f.track.ice}
 			f.state.keep(again, at)
 			f.state.keep(again, at+1)
 			got := make([]float64, f.track.n)

@@ -66,3 +66,44 @@ func TestTrackFollowsTheEndOfThawing(t *testing.T) {
 		t.Errorf("%.3f K off", worst)
 	}
 }
+
+// No ice of one direction is refused, whatever its freezing point, start and surface: a face may be held at a temperature or a course, and food may
+// start at its freezing point. Layers with held faces are marched too, ice or none.
+func TestIceIsNotRefused(t *testing.T) {
+	held := func(c ...float64) Exposure {
+		e := Exposure{Surface: Held, Medium: Course{C: c}}
+		if len(c) > 1 {
+			e.Medium.TimesS = []float64{0, 3000}
+		}
+		return e
+	}
+	dry := &Material{Name: "test food", Source: "input of the test", Table: true, LowC: -60, HighC: 260, Waterless: true, Props: func(c float64) Properties {
+		return Properties{0.45 + 0.002*c, 1000, 3200 + 6*c}
+	}}
+	for _, tf := range []float64{-0.005, -0.03, -0.06, -0.1, -1.1} {
+		icy := iceLaw{1050, 3500, 1900, 227e3, tf, 0.48, 1.55}.food("test food", "input of the test", 150)
+		for _, start := range []float64{tf, -18} {
+			for _, e := range [][2]Exposure{{filmTo(30, -30), filmTo(30, 90)}, {filmTo(2000, -30), filmTo(2000, 90)}, {held(-30), held(90)}, {held(-5, -30), held(4, 90)}} {
+				for _, shape := range []*Shape{Slab, Sphere, LayeredSlab} {
+					p := Product{Name: "p", Food: icy, StartC: start, Shape: shape, Size: Size{ThicknessM: 0.04, DiameterM: 0.04}}
+					if shape == LayeredSlab {
+						p.Food, p.Layers = nil, []Layer{{Food: icy, ThicknessM: 0.025, BelowM2KW: 0.001}, {Food: dry, ThicknessM: 0.015}}
+					}
+					steps := []Step{{Name: "freeze", Stage: Freeze, DurationS: 3000, Exposure: e[0]}, {Name: "cook", Stage: Cook, DurationS: 3000, Exposure: e[1]}}
+					if _, err := Solve(p, steps, Options{Rough: true}); err != nil {
+						t.Errorf("freezing point %g °C, start %g °C, %s in %s: %v", tf, start, shape.Name, e[0].Surface.Name, err)
+					}
+				}
+			}
+		}
+	}
+	for _, e := range []Exposure{held(90), held(20, 90)} {
+		p := Product{Name: "p", Shape: LayeredSlab, StartC: 5, Size: Size{ThicknessM: 0.04}, Layers: []Layer{{Food: dry, ThicknessM: 0.025, BelowM2KW: 0.001}, {Food: dry, ThicknessM: 0.015}}}
+		h, err := Solve(p, []Step{{Name: "cook", Stage: Cook, DurationS: 3000, Exposure: e}}, Options{})
+		if err != nil {
+			t.Error(err)
+		} else if n := len(h.field.(*marched).track.times); n > 400 {
+			t.Errorf("%d instants", n)
+		}
+	}
+}

@@ -35,7 +35,7 @@ type mesh interface {
 }
 
 func (f *marched) course(x coord, times, out []float64) {
-	if m, ok := f.mesh.(weighted); ok && f.track.laws == nil {
+	if m, ok := f.mesh.(weighted); ok && f.track.ice == nil {
 		if f.seen.w == nil || f.seen.x != x {
 			f.seen = followed{x: x, w: m.placeWeights(x, f.seen.w[:0]), i: none}
 		}
@@ -91,7 +91,7 @@ func (p *followed) at(k *track, b between) float64 {
 
 func (f *marched) at(t float64) snapshot {
 	b := f.track.find(t)
-	if s, ok := f.shot.(*smoothShot); ok && f.track.laws == nil {
+	if s, ok := f.shot.(*smoothShot); ok {
 		s.b, s.full = b, false
 		return s
 	}
@@ -115,7 +115,7 @@ func (s *marchedShot) mean() float64 {
 	return sum
 }
 
-// smoothShot is one with polynomials through its nodes. Where a track keeps temperatures, what it kept at both ends of an interval is brought
+// smoothShot is one with polynomials through its nodes. What the track kept at both ends of an interval is brought
 // to the nodes of the body once for all instants between.
 type smoothShot struct {
 	marchedShot
@@ -143,10 +143,6 @@ func newSmoothShot(m *spaceMesh, f *marched, c []float64) *smoothShot {
 
 func (s *smoothShot) grid(out []float64) {
 	k := s.f.track
-	if k.laws != nil {
-		s.marchedShot.grid(out)
-		return
-	}
 	if i := s.b.i; i != s.i || k.cuts != s.cuts {
 		e := &s.ends
 		if i == s.i+1 && k.cuts == s.cuts {
@@ -165,14 +161,11 @@ func (s *smoothShot) grid(out []float64) {
 }
 
 func (s *smoothShot) mean() float64 {
-	if s.f.track.laws != nil {
-		return s.marchedShot.mean()
-	}
 	return s.all.at(s.f.track, s.b)
 }
 
 func (s *smoothShot) slice(axis int, x coord, _ [3]int, out []float64) {
-	if s.f.track.laws == nil && !s.full {
+	if !s.full {
 		s.f.track.all(s.b, s.c)
 		s.full = true
 	}

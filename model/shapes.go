@@ -80,7 +80,7 @@ const waterBathW = 20
 // Refusal is a process or food that conduction does not describe: what a person may type, why it is refused, what to do instead.
 type Refusal struct{ Words, Why, Instead string }
 
-// Refusals lists what the reader must refuse by name, in Surroundings, Stage and Process equipment.
+// Refusals lists what the reader must refuse by name, in Surroundings, Stage and Equipment and in the names of steps and processes.
 var Refusals = []Refusal{
 	{"vacuum", "vacuum cooling boils water out of the whole food; conduction does not describe it", "judge a probe record of the batch instead"},
 	{"microwave, radio frequency, ohmic", "the heat arises inside the food, very unevenly", "measure the coldest place with probes; only the standing time after a measured start may be predicted"},

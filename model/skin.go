@@ -57,7 +57,7 @@ const stefan = 5.670374419e-8
 // end of moist cooked food (common practice, no source).
 const activityHeats, activityCools = 1, 0.95
 
-// newSkin makes ready what the exposure e does to a food of water activity aw during a step. Of c it takes shape, size and foodC.
+// newSkin makes ready what the exposure e does to a food of water activity aw during a step. Of c it takes shape, size, foodC and face.
 func newSkin(e *Exposure, c *filmCase, aw *float64, st *Step) *skin {
 	s := &skin{exp: e, film: *c, slowHeats: st.Stage != nil && st.Stage.Heats}
 	s.film.altitudeM = st.AltitudeM

@@ -8,14 +8,13 @@ import (
 )
 
 // track keeps n nodes at rising instants, with their slopes in time: cubics through both stand between. A change of surroundings stands
-// twice, with the slopes before and after it. Where a front of ice moves through more than one direction, heat contents are kept, which change
-// evenly when it passes a node, and not temperatures, which do not.
+// twice, with the slopes before and after it. Where a front of ice moves through more than one direction, Kirchhoff integrals are kept, which are
+// as even when it passes a node and cheaper to read between nodes.
 type track struct {
 	n     int
 	times []float64
-	data  []float64 // by instant: n temperatures, °C, or heat contents, J/m³, then n slopes of them
-	laws  []*law    // by node, of heat contents; nil: temperatures are kept
-	ice   *law      // of all nodes: Kirchhoff integrals are kept
+	data  []float64 // by instant: n temperatures, °C, or Kirchhoff integrals, W/m, then n slopes of them
+	ice   *law      // where Kirchhoff integrals are kept; nil: temperatures are
 	last  int       // the interval that was looked at last
 	cuts  int       // how often instants were taken back
 }
@@ -103,10 +102,6 @@ func (k *track) all(b between, out []float64) {
 		for j, u := range out[:k.n] {
 			out[j], _ = k.ice.byU.temperature(u)
 		}
-		return
-	}
-	for j, l := range k.laws {
-		out[j] = l.temperature(out[j])
 	}
 }
 
@@ -116,9 +111,6 @@ func (k *track) kept(i, j int) float64 {
 	if k.ice != nil {
 		t, _ := k.ice.byU.temperature(c)
 		return t
-	}
-	if k.laws != nil {
-		return k.laws[j].temperature(c)
 	}
 	return c
 }
@@ -130,16 +122,13 @@ func (k *track) reach(from, to float64) (low, high float64) {
 		if t < from || t > to {
 			continue
 		}
-		if k.laws != nil {
-			for j := range k.n {
-				c := k.kept(i, j)
-				low, high = min(low, c), max(high, c)
-			}
-			continue
-		}
 		c, _ := k.row(i)
 		least, most := spanOf(c)
 		low, high = min(low, least), max(high, most)
+	}
+	if k.ice != nil && low <= high {
+		low, _ = k.ice.byU.temperature(low)
+		high, _ = k.ice.byU.temperature(high)
 	}
 	return low, high
 }
