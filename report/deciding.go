@@ -34,10 +34,11 @@ func tightness(f *rules.Finding) float64 {
 }
 
 // madeByUntil is the step whose end sets a finding's margin in K: it ends when the slowest place reaches a temperature that lies
-// just that far beyond the limit's own. Such a margin says what was typed in Until, and nothing of the food. "" if there is none.
+// just that far beyond the limit's own, and the finding is decided in that step, or later at a place that has stayed there. Such a margin says what was typed in Until, and nothing of the
+// food. "" if there is none.
 func (p *Product) madeByUntil(f *rules.Finding) string {
 	h := p.runOf(f)
-	if h == nil || f.Limit == nil || f.Verdict != rules.Met || !finite(f.MarginK) {
+	if h == nil || f.Limit == nil || f.Verdict != rules.Met || !finite(f.MarginK) || f.AtS == nil {
 		return ""
 	}
 	own, heats := aim(f.Limit)
@@ -50,11 +51,27 @@ func (p *Product) madeByUntil(f *rules.Finding) string {
 		if !heats {
 			beyond = -beyond
 		}
-		if beyond > 0 && math.Abs(*f.MarginK-beyond) < near {
+		if beyond > 0 && math.Abs(*f.MarginK-beyond) < near && *f.AtS > sp.StartS && stays(h, f, &sp, near) {
 			return sp.Step.Name
 		}
 	}
 	return ""
+}
+
+// stays tells whether the place of a finding has stayed within near, K, of the temperature that ended a step, up to the deciding time: what has
+// gone further and come back is decided by what brought it back.
+func stays(h *model.History, f *rules.Finding, sp *model.Span, near float64) bool {
+	if *f.AtS <= sp.EndS || f.Place == nil {
+		return *f.AtS <= sp.EndS
+	}
+	const looks = 64
+	for k := 0; k <= looks; k++ {
+		c := h.At(*f.Place, sp.EndS+(*f.AtS-sp.EndS)*float64(k)/looks)
+		if math.Abs(c-*sp.Step.UntilC) > near {
+			return false
+		}
+	}
+	return true
 }
 
 // aim is the temperature that a limit wants food brought to or kept at, °C, and whether by heating; nil where it wants none.

@@ -24,12 +24,16 @@ func TestMadeByUntil(t *testing.T) {
 		{"5 °C wanted, the chill ends at 4 °C", rules.Finding{Limit: limit(rules.StayBelow, 5), Verdict: rules.Met, MarginK: ptr(0.96)}, chill(&yes), true},
 		{"more room than the end of the step gives", rules.Finding{Limit: limit(rules.StayBelow, 5), Verdict: rules.Met, MarginK: ptr(1.6)}, chill(&yes), false},
 		{"the step ended by its longest duration", rules.Finding{Limit: limit(rules.StayBelow, 5), Verdict: rules.Met, MarginK: ptr(0.96)}, chill(&no), false},
+		{"as much room as the end of the step gives, by chance, an hour after it", rules.Finding{Limit: limit(rules.StayBelow, 5), Verdict: rules.Met, MarginK: ptr(0.96), AtS: ptr(12600.)}, chill(&yes), false},
 		{"what is lacking is never made by it", rules.Finding{Limit: limit(rules.StayBelow, 3), Verdict: rules.NotMet, MarginK: ptr(-1.)}, chill(&yes), false},
 		{"a heating limit is not about a chill", rules.Finding{Limit: limit(rules.HeatWithin, 3), Verdict: rules.Met, MarginK: ptr(1.)}, chill(&yes), false},
 		{"lethality has no temperature to reach", rules.Finding{Limit: limit(rules.Lethality, 5), Verdict: rules.Met, MarginK: ptr(1.)}, chill(&yes), false},
 	} {
 		t.Run(x.name, func(t *testing.T) {
 			p := &Product{History: x.h}
+			if x.f.AtS == nil {
+				x.f.AtS = ptr(9000.)
+			}
 			if got := p.madeByUntil(&x.f) == "chill"; got != x.made {
 				t.Errorf("%v", got)
 			}

@@ -43,12 +43,12 @@ func (p *Product) judgedInPart() []string {
 	airOnly := true // nothing that weighs was judged on the food
 	for i := range p.Judgement.Findings {
 		f := &p.Judgement.Findings[i]
-		airOnly = airOnly && (f.Level != "must" || f.Verdict == rules.NotApplicable || strings.EqualFold(judgedAt(f), "medium"))
+		airOnly = airOnly && (f.Level != "must" || unjudged(f) || strings.EqualFold(judgedAt(f), "medium"))
 	}
 	for i := range p.Judgement.Findings {
 		f := &p.Judgement.Findings[i]
 		where := judgedAt(f)
-		if where == "" || strings.EqualFold(where, "centre") || f.Level != "must" || f.Verdict == rules.NotApplicable {
+		if where == "" || strings.EqualFold(where, "centre") || f.Level != "must" || unjudged(f) {
 			continue
 		}
 		inside := func(k *rules.Kind) bool { return f.Limit.Kind != nil && f.Limit.Kind.Name == k.Name }
@@ -77,6 +77,11 @@ func (p *Product) judgedInPart() []string {
 		}
 	}
 	return out
+}
+
+// unjudged tells whether nothing was judged: a limit that does not apply, or of which nothing could be read.
+func unjudged(f *rules.Finding) bool {
+	return f.Verdict == rules.NotApplicable || f.Verdict == rules.CannotTell && f.Value == nil
 }
 
 // inPart is the caution on them.

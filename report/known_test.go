@@ -32,7 +32,6 @@ func knownCases() []KnownAnswer {
 		one("slab course", model.Slab, step(model.Film, 3)), one("slab faces", model.Slab, step(model.Film, 1, top)), one("brick film", model.Brick, step(model.Film, 1)))
 }
 
-// A product's report shows the cases of its shape and surroundings, and every case that is outside its allowance.
 // TestAmountOfAPureNumber: a case without a unit has none printed.
 func TestAmountOfAPureNumber(t *testing.T) {
 	pure, warm := KnownAnswer{Unit: "-"}, KnownAnswer{Unit: "°C"}
@@ -41,6 +40,7 @@ func TestAmountOfAPureNumber(t *testing.T) {
 	}
 }
 
+// A product's report shows the cases of its shape and surroundings, and every case that is outside its allowance.
 func TestClosestCases(t *testing.T) {
 	film := model.Step{Exposure: model.Exposure{Surface: model.MovingAir, Medium: model.Course{TimesS: []float64{0}, C: []float64{3}}}}
 	held := model.Step{Exposure: model.Exposure{Surface: model.Held, Medium: model.Course{TimesS: []float64{0}, C: []float64{3}}}}

@@ -16,6 +16,9 @@ func TestStatedAnswers(t *testing.T) {
 		want   Verdict
 	}{
 		{"yes", Met}, {" Yes. ", Met}, {"yes, sealed bags", Met}, {"yes – seen by the cook", Met}, {"yes: form 4", Met}, {"yes; both lids", Met}, {"Yes, checked on Monday by the chef", Met},
+		{"yes, checked 3 May 2026", Met}, {"yes, at most 2 h", Met}, {"yes, may be", CannotTell}, {"yes, excluding fish", CannotTell}, {"yes, other than fish", CannotTell},
+		{"yes, from next week", CannotTell}, {"yes, will do so", CannotTell}, {"yes, unconfirmed", CannotTell}, {"yes, in progress", CannotTell}, {"yes, hardly ever", CannotTell},
+		{"yes, most of the time", CannotTell}, {"yes, to be done", CannotTell},
 		{"yes, if time allows", CannotTell}, {"yes, pending", CannotTell}, {"yes, mostly", CannotTell}, {"yes, should be", CannotTell}, {"yes – to be confirmed", CannotTell},
 		{"yes, when the chiller is free", CannotTell}, {"yes; nothing else is open", CannotTell},
 		{"yes, but not on Sundays", CannotTell}, {"yes, unless it is busy", CannotTell}, {"yes?", CannotTell}, {"yes, never checked", CannotTell},

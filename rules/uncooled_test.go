@@ -35,6 +35,13 @@ func TestUncooled(t *testing.T) {
 		{"chilled, then reheated and served", "cook 0-60, cool 60-180, reheat 180-220", "0:4 60:92 150:20 180:4 220:80", cool, Met, "took", ""},
 		{"a limit for this very product", "cook 0-60, rest 60-70", "0:4 60:92 70:88", named, CannotTell, "names this very product", ""},
 		{"advice", "cool 0-90, cook 90-150", "0:4 90:3 150:92", advice, NotApplicable, "Nothing was above", ""},
+		{"a cook is lacking, and not a chill", "cool 0-90, hold cold 90-150", "0:20 90:4 150:4", after, NotApplicable, "no stage cook", ""},
+		{"a cook is lacking, and the chill comes last", "reheat 0-60, cool 60-400", "0:4 60:80 400:4", after, NotApplicable, "no stage cook", ""},
+		{"delivered a little warm, stored, cooked and served", "store 0-50, cook 50-110, hold hot 110-140", "0:9 50:3 110:80 140:76", end, NotApplicable, "no stage cool", "is at 76 °C at the end"},
+		{"delivered a little warm and stored", "store 0-50", "0:9 50:3", end, NotApplicable, "no stage cool", ""},
+		{"warmed again before it had cooled", "cook 0-60, cool 60-180, reheat 180-220", "0:4 60:92 180:70 220:80", cool, CannotTell, "was warmed again after the stage cool", ""},
+		{"warmed again in the whole chain", "cook 0-60, store 60-180, reheat 180-220", "0:4 60:92 180:70 220:80", whole, CannotTell, "was warmed again after the stage store", ""},
+		{"cooked gently, chilled, reheated and served", "cook 0-60, cool 60-180, reheat 180-220", "0:4 60:55 180:3 220:75", cool, NotApplicable, "", "is at 75 °C at the end"},
 	} {
 		t.Run(x.name, func(t *testing.T) {
 			f := one(t, x.l, record(t, x.spans, x.course))
