@@ -45,13 +45,16 @@ type section struct {
 // numberFormat reads a number format code.
 func (b *book) numberFormat(code string) numberFormat {
 	var f numberFormat
+	if code == "" { // as programs show it (common practice, no source)
+		code = "General"
+	}
 	parts := sections(code)
 	for i, p := range parts {
 		if i == 3 || i > 0 && i == len(parts)-1 && strings.Contains(p, "@") {
 			break // for words
 		}
-		s := sectionOf(p)
-		if s.form = b.form(p); s.form >= Worded && s.look == InWords {
+		s := sectionOf(p, b.form(p))
+		if s.form >= Worded && s.look == InWords {
 			s.form = Bare // words in place of a number, not behind it
 		}
 		s.times(p)
@@ -132,9 +135,9 @@ func pieces(s string) []string {
 	return out
 }
 
-// sectionOf finds what a section shows of numbers.
-func sectionOf(code string) section {
-	var s section
+// sectionOf finds what a section of a form shows of numbers.
+func sectionOf(code string, form Form) section {
+	s := section{form: form}
 	ps := pieces(code)
 	place := func(i int) bool { return i >= 0 && i < len(ps) && strings.Contains("0#?", ps[i]) }
 	first, last, percents := -1, -1, 0
@@ -219,8 +222,12 @@ func hasMinus(s string) bool {
 // thousands or a fraction.
 func alters(ps []string, first, last int) bool {
 	digit := func(s string) bool { return s != "" && s[0] >= '0' && s[0] <= '9' }
-	if b := before(ps, first); b != "" && (digit(b[len(b)-1:]) || strings.ContainsAny(b[len(b)-1:], ".,")) {
-		return true
+	if b := before(ps, first); b != "" {
+		n := len(b)
+		stop := strings.ContainsAny(b[n-1:], ".,") && (n == 1 || digit(b[n-2:])) // ca.150 is no .150
+		if digit(b[n-1:]) || stop {
+			return true
+		}
 	}
 	for i := first; i < last; i++ {
 		if ps[i][0] == '"' && strings.Trim(ps[i][1:], " '’/\u00a0\u202f\u2009") != "" {
@@ -299,8 +306,8 @@ func (f numberFormat) choose(x float64) (s *section, below bool) {
 	}
 	for i := range f {
 		switch s := &f[i]; {
-		case s.condition != "" && s.holds(x):
-			return s, false
+		case s.condition != "" && s.holds(x): // a section for all below 0 adds no sign of its own (common practice, no source)
+			return s, x < 0 && (s.condition == "<" || s.condition == "<=") && s.than == 0
 		case s.condition != "":
 		case i > 0 && i == len(f)-1, i == 0 && x > 0:
 			return s, false

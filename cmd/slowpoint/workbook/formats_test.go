@@ -31,11 +31,16 @@ func TestShownAsStored(t *testing.T) {
 		// conditions
 		{`[>100]0;"2"`, 5, Bare, InWords}, {`[>100]0;"2"`, 105, Bare, AsStored}, {"[<10]0.0;0", 12, Bare, AsStored}, {"[<10]0.0;0", -12, Bare, AsStored},
 		{"[>=1000]0,;0", 4000, Bare, Thousands}, {"[>=1000]0,;0", 400, Bare, AsStored}, {`[=1]"one";[=2]"two";0`, 2, Bare, InWords}, {`[=1]"one";[=2]"two";0`, 3, Bare, AsStored},
+		{"[<0][Red]-0.0;0.0", -5, Bare, AsStored}, {"[Red][<0]-0.0;0.0", -5, Bare, AsStored}, {"[<0]0.0;0.0", -5, Bare, Otherwise}, {"[>100]0;0;0", -5, Bare, Otherwise},
+		{"[<=4]0,;0", 4, Bare, Thousands}, {"[<>4]0,;0", 4, Bare, AsStored}, {`0.0;"−"0.0`, -18, Bare, AsStored}, {"#%", 0.06, Percent, AsStored}, {"#'##0", 4000, Bare, AsStored},
+		{`"ca."0`, 150, Bare, AsStored}, {`"Nr."0`, 15, Bare, AsStored}, {`"."0`, 15, Bare, Otherwise}, {`"1."0`, 15, Bare, Otherwise}, {"", 15, Bare, AsStored},
 		{"[>100]0", 5, Bare, Otherwise}, {"[<1]h:mm;0.0", 5, Bare, AsStored}, {"[<1]h:mm;0.0", 5 * h, Clock, AsStored},
 		// times
 		{"h:mm", 2 * h, Clock, AsStored}, {"h:mm", 26 * h, Clock, OverDays}, {"hh:mm:ss", 24 * h, Clock, OverDays}, {"h:mm", 24*h - 1e-9, Clock, OverDays}, {"h:mm", 23.9 * h, Clock, AsStored},
 		{"[h]:mm", 26 * h, Clock, AsStored}, {"[mm]:ss", 26 * h, Clock, AsStored}, {"mm:ss", 0.9 * h, Clock, AsStored}, {"mm:ss.0", 1.5 * h, Clock, OverHours},
 		{"ss.0", 0.5 * h, Clock, OverMinutes}, {"[$-F400]h:mm:ss", 26 * h, Clock, OverDays}, {"h:mm AM/PM", 14 * h, Clock, TimeOfDay}, {"h:mm AM/PM", 2 * h, Clock, TimeOfDay},
+		{"[mm]", 26 * h, Clock, AsStored}, {"[h]", 26 * h, Clock, AsStored}, {"[s]", 0.1 * h, Clock, AsStored}, {`[m]" min"`, 26 * h, Clock, AsStored},
+		{"h:mm 上午/下午", 14 * h, Clock, TimeOfDay}, {`[$-F400]h:mm:ss\ AM/PM`, 14 * h, Clock, TimeOfDay},
 		{"h:mm a/p", 2 * h, Clock, TimeOfDay}, {`h" h "mm" min"`, 2 * h, Clock, AsStored}, {`h" ap "mm`, 2 * h, Clock, AsStored}, {"yyyy-mm-dd", 46023, Date, AsStored},
 	} {
 		b := &book{}

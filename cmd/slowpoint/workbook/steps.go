@@ -250,7 +250,7 @@ func processIn(typed string, passing bool) *model.Refusal {
 	}
 	words := strings.FieldsFunc(Key(typed), func(c rune) bool { return !('a' <= c && c <= 'z') })
 	for k := range words {
-		if passing && k > 0 && (aside[words[k-1]] || words[k-1] == "the" && k > 1 && aside[words[k-2]]) {
+		if passing && k > 0 && (aside[words[k-1]] || k > 1 && (words[k-1] == "the" || words[k-1] == "deep") && aside[words[k-2]]) {
 			continue
 		}
 		said := words[k]
@@ -283,12 +283,12 @@ var refusedWords, longestRefused = func() (map[string]*model.Refusal, int) {
 }()
 
 // aside are words before a word of model.Refusals that rule it out, or put it before or after what is typed.
-var aside = map[string]bool{"no": true, "not": true, "non": true, "never": true, "without": true, "after": true, "before": true, "from": true, "for": true, "of": true}
+var aside = map[string]bool{"no": true, "not": true, "non": true, "never": true, "without": true, "after": true, "before": true}
 
 // harmless words behind a word of model.Refusals name packs and tools, not the process: a vacuum bag, a baking tray.
 var harmless = map[string]bool{"bag": true, "bags": true, "pack": true, "packs": true, "packed": true, "packaged": true, "packaging": true, "pouch": true, "pouches": true,
 
-	"sealed": true, "skin": true, "tumble": true, "tumbled": true, "tumbler": true, "tumbling": true, "filled": true, "filler": true, "filling": true,
+	"seal": true, "sealed": true, "skin": true, "tumble": true, "tumbled": true, "tumbler": true, "tumbling": true, "filled": true, "filler": true, "filling": true,
 	"meal": true, "meals": true, "safe": true, "proof": true, "sealing": true, "packing": true, "sealer": true, "wrapped": true, "tray": true, "trays": true, "sheet": true, "sheets": true, "paper": true, "tin": true, "tins": true, "dish": true, "parchment": true}
 
 // exposure reads the surroundings columns of Steps or Faces. The course is nil if none is named or it is not known.

@@ -262,7 +262,7 @@ func raises(e xml.StartElement) bool {
 type rich struct {
 	joined string
 	struck bool // one of them is struck through
-	raised bool // one of them holds raised or lowered digits that do not belong to a letter before them, as the 2 of m² does
+	raised bool // one of them holds raised or lowered digits that are no unit's, as the 2 of m² is
 }
 
 // richText reads up to the end of the element that was just opened.
@@ -294,7 +294,7 @@ func richText(d *walker) (r rich, err error) {
 			if inT {
 				s.Write(t)
 				r.struck = r.struck || lined && len(bytes.TrimSpace(t)) > 0
-				r.raised = r.raised || up && bytes.ContainsAny(t, "0123456789") && !unicode.IsLetter(before)
+				r.raised = r.raised || up && bytes.ContainsAny(t, "0123456789") && !strings.ContainsRune("mtn", before) // m², ft², in²
 				if len(t) > 0 {
 					before, _ = utf8.DecodeLastRune(t)
 				}
