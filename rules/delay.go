@@ -16,6 +16,15 @@ func judgeDelay(v *view) Finding {
 	q := question{unit: "min", need: *l.TimeS / 60}
 	worst := none(NotApplicable, "stage lacking")
 	worst.holes = holes{"stage": then.Name}
+	if v.onlyBefore(then, first) { // what it took down is not the food of the first stage, and nobody can tell whether it is in its place
+		worst.verdict, worst.word, worst.holes = CannotTell, "delay order", holes{"first": first.Name, "second": then.Name}
+		if chills(then) {
+			worst.word = "delay order cold"
+		}
+		f := v.finding(worst, q)
+		f.Why = v.sentence(&f, worst, "")
+		return f
+	}
 	for i, r := range v.runs {
 		if r.stage != first {
 			continue
@@ -27,6 +36,22 @@ func judgeDelay(v *view) Finding {
 	f := v.finding(worst, q)
 	f.Why = v.sentence(&f, worst, "")
 	return f
+}
+
+// onlyBefore tells whether a stage comes, and each time before the first of another.
+func (v *view) onlyBefore(early, late *model.Stage) bool {
+	comes, seen := false, false
+	for _, r := range v.runs {
+		switch {
+		case r.stage == late:
+			seen = true
+		case r.stage == early && seen:
+			return false
+		case r.stage == early:
+			comes = true
+		}
+	}
+	return comes && seen
 }
 
 // wait judges the time from the end of the run i to the next start of a stage; ok is false where the first stage comes again

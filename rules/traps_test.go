@@ -481,14 +481,26 @@ func TestDelay(t *testing.T) {
 		{"cooked again before", "cook 0-60, rest 60-200, cook 200-260, cool 260-400", Met, 0},
 		{"cooked again and not chilled after it", "cook 0-60, cool 60-100, cook 100-160, rest 160-200", CannotTell, 40},
 		{"not chilled after it, time run out", "cook 0-60, cool 60-100, cook 100-160, rest 160-300", NotMet, 140},
+		{"chilled raw, cooked and served", "cool 0-40, cook 40-60, rest 60-80", CannotTell, math.NaN()},
+		{"chilled raw, cooked and held hot past the time", "cool 0-40, cook 40-60, hold hot 60-300", CannotTell, math.NaN()},
 	} {
 		t.Run(x.name, func(t *testing.T) {
 			got := one(t, l, record(t, x.spans, "0:5 100:60"))
 			if got.Verdict != x.want {
 				t.Errorf("%v, want %v: %s", got.Verdict, x.want, got.Why)
 			}
+			if math.IsNaN(x.value) { // the chilling is none of the cooked food, so no time is counted
+				if got.Value != nil || !strings.Contains(got.Why, "cool comes only before the stage cook") || !strings.Contains(got.Why, "call it store") {
+					t.Errorf("%v: %s", got.Value, got.Why)
+				}
+				return
+			}
 			closeTo(t, "value", got.Value, x.value, 1e-9)
 		})
+	}
+	heat := Limit{Kind: Delay, Stages: st(model.Cook), Then: model.HoldHot, TimeS: min_(90)}
+	if got := one(t, heat, record(t, "hold hot 0-40, cook 40-200", "0:5 200:80")); got.Verdict != CannotTell || strings.Contains(got.Why, "store") {
+		t.Errorf("%v: %s", got.Verdict, got.Why)
 	}
 }
 

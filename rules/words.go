@@ -87,6 +87,8 @@ var words = map[string]string{
 	"delay":             "{value} passed from the end of {first} to the start of {second}, and {time} is allowed.",
 	"delay late":        "The stage {second} had not started {value} after the end of {first}, and {time} is allowed.",
 	"delay open":        "The stage {second} had not started when the history ended, {value} after the end of {first}, and {time} is allowed, so it cannot be told.",
+	"delay order":       "The stage {second} comes only before the stage {first}, so it cannot be told. Are the steps in order?",
+	"delay order cold":  "The stage {second} comes only before the stage {first}, so it cannot be told. Are the steps in order? If that stage chills what is not yet cooked, call it store or hold cold.",
 	"duration least":    "The {stage} lasted {value}, and {time} is needed.",
 	"duration most":     "The {stage} lasted {value}, and {time} is allowed.",
 	"falling":           "{who} rose by {value}, and {allowance} is allowed.",
