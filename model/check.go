@@ -173,6 +173,14 @@ func (c *checker) foodAt(f *Material, row cell.Ref) {
 		return flow.Name
 	}
 	says, instead := "", "use the shape stirred if it is stirred all the time, or judge a probe record"
+	if f.Flow == FlowsYes && p.Shape != LayeredSlab {
+		where := "here"
+		if field == "Food" {
+			where = "in the column Flows of a row \"" + f.Name + "\" of the sheet Foods (with a Source and nothing else)"
+		}
+		instead = "use the shape stirred if it is stirred all the time; type thick " + where +
+			" if it hardly flows, as a mash or a thick sauce: it is then run as conducting and as well mixed, and the worse finding counts; or judge a probe record"
+	}
 	if field == "Flows" { // what was typed stands in front, and a food's own name with a built-in one
 		says = "says that " + f.Name + " "
 	}
@@ -193,7 +201,7 @@ func (c *checker) foodAt(f *Material, row cell.Ref) {
 		return
 	}
 	if f.FreezingC != nil && p.StartC < *f.FreezingC || f.FreezingC == nil && p.StartC < unfrozenC {
-		c.add(p.At, "Start temperature", fmt.Sprintf("%g °C", p.StartC), "the food starts frozen, and "+f.noIce(), iceNeeds)
+		c.add(p.At, "Start temperature", fmt.Sprintf("%g °C", p.StartC), "the food starts frozen, and "+f.noIce(), f.iceNeeds())
 	}
 }
 
@@ -268,7 +276,7 @@ func (c *checker) step(st *Step) {
 		any := slices.ContainsFunc(foods, (*Material).freezes)
 		for _, f := range foods {
 			if !f.freezes() && !f.Waterless && !(any && f.FreezingC != nil && *f.FreezingC < low) { // a tin or a pack around it has none within reach
-				c.add(st.At, "Stage", st.Stage.Name, f.noIce(), iceNeeds)
+				c.add(st.At, "Stage", st.Stage.Name, f.noIce(), f.iceNeeds())
 				break
 			}
 		}
@@ -540,15 +548,18 @@ func (c *checker) coldFor(f *Material, st *Step, e *Exposure, field string, low 
 	typed := func() string { return fmt.Sprintf("%g °C", low) }
 	if f.FreezingC == nil {
 		if low < unfrozenC {
-			c.add(e.At, field, typed(), fmt.Sprintf("the food could freeze here, and its freezing point is not known, so nothing below %g °C is calculated", unfrozenC),
-				"give the food's freezing point in Foods; a chill medium below it is then raised to it, which is a bound on the safe side")
+			mend := f.pointNeeds()
+			if mend == "" {
+				mend = "give the food's freezing point in Foods; a chill medium below it is then raised to it, which is a bound on the safe side"
+			}
+			c.add(e.At, field, typed(), fmt.Sprintf("the food could freeze here, and its freezing point is not known, so nothing below %g °C is calculated", unfrozenC), mend)
 		}
 		return
 	}
 	if low >= *f.FreezingC || f.freezes() || raises(st.Stage) {
 		return
 	}
-	c.add(e.At, field, typed(), fmt.Sprintf("the food could freeze here (its freezing point is %g °C), and %s", *f.FreezingC, f.noIce()), iceNeeds)
+	c.add(e.At, field, typed(), fmt.Sprintf("the food could freeze here (its freezing point is %g °C), and %s", *f.FreezingC, f.noIce()), f.iceNeeds())
 }
 
 // raises tells whether a medium below the freezing point may be raised to it: only where the food is to get colder,
@@ -570,4 +581,20 @@ func (m *Material) noIce() string {
 }
 
 // iceNeeds is what freezing and melting need.
-const iceNeeds = "give the food's composition and its freezing point in a row of Foods, or judge a probe record of this step"
+func (m *Material) iceNeeds() string {
+	if s := m.pointNeeds(); s != "" {
+		return s + "; or judge a probe record of this step"
+	}
+	return "give the food's composition and its freezing point in a row of Foods, or judge a probe record of this step"
+}
+
+// pointNeeds says how a food that lacks its freezing point alone, for its composition is known, is given it; "" of others.
+func (m *Material) pointNeeds() string {
+	switch {
+	case !m.Composed || m.FreezingC != nil:
+		return ""
+	case m.At.IsZero(): // a built-in food has no row of its own
+		return "add a row \"" + m.Name + "\" to the sheet Foods with its Freezing point and a Source and nothing else: the composition stays the built-in one, and its ice is calculated"
+	}
+	return "give its Freezing point in its row of Foods: its ice is then calculated"
+}

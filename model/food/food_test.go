@@ -363,7 +363,7 @@ func TestPublishedApples(t *testing.T) {
 		if !ok {
 			t.Fatalf("no food %q", r["food"])
 		}
-		m, err := f.Weighed(Weighing{DensityKgM3: published.Number(t, r["rho"]), Source: "textbook"})
+		m, err := f.Weighed(Weighing{DensityKgM3: ptr(published.Number(t, r["rho"])), Source: "textbook"})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -389,7 +389,7 @@ func TestBread(t *testing.T) {
 		t.Errorf("%v, want the density asked for", err)
 	}
 	tf := -5.
-	m, err := bread.Weighed(Weighing{DensityKgM3: 300, FreezingC: &tf, Source: "own scales"})
+	m, err := bread.Weighed(Weighing{DensityKgM3: ptr(300), FreezingC: &tf, Source: "own scales"})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -401,7 +401,7 @@ func TestBread(t *testing.T) {
 		t.Errorf("%+v", m)
 	}
 	for _, c := range []float64{50, 1400} {
-		if _, err := bread.Weighed(Weighing{DensityKgM3: c, Source: "own scales"}); !errors.As(err, &faults) || faults[0].Field != "Density" {
+		if _, err := bread.Weighed(Weighing{DensityKgM3: &c, Source: "own scales"}); !errors.As(err, &faults) || faults[0].Field != "Density" {
 			t.Errorf("%g kg/m³: %v", c, err)
 		}
 	}
@@ -459,3 +459,5 @@ func TestWaterless(t *testing.T) {
 		}
 	}
 }
+
+func ptr(x float64) *float64 { return &x }

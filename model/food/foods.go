@@ -82,18 +82,22 @@ func (f Food) Material() model.Material {
 
 // Weighing is what a user measured of a built-in food.
 type Weighing struct {
-	DensityKgM3 float64  // air included
+	DensityKgM3 *float64 // air included; nil: that of the composition
 	FreezingC   *float64 // °C; nil: the built-in figure, if there is one
 	Source      string   // who measured
 }
 
-// Weighed is the food's thermal behaviour with the density, and perhaps the freezing point, that was measured. An error is of type Faults.
+// Weighed is the food's thermal behaviour with the density, the freezing point or both that were measured. An error is of type Faults.
 func (f Food) Weighed(w Weighing) (model.Material, error) {
-	f.DensityKgM3 = &w.DensityKgM3
+	source := f.Source
+	if w.DensityKgM3 != nil {
+		f.DensityKgM3 = w.DensityKgM3
+		source += "; density: " + w.Source
+	}
 	if w.FreezingC != nil {
 		f.FreezingC, f.FreezingSource = w.FreezingC, w.Source
 	}
-	return f.made(f.Source + "; density: " + w.Source)
+	return f.made(source)
 }
 
 func (f Food) made(source string) (model.Material, error) {

@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"errors"
+	"slices"
 	"sort"
 	"strconv"
 	"strings"
@@ -124,15 +125,24 @@ func (f *food) make() {
 	}
 }
 
-// weighed makes the food of the built-in one of its name, with the density that was measured; false if its row says anything else.
+// ownHeadings are what a row may say of the built-in food of its name.
+var ownHeadings = []string{"Density", "Freezing point", "Water activity", "Flows"}
+
+// ofBuiltIn tells whether a row says something of the built-in food of its name, and leaves the composition to that.
+func (f *food) ofBuiltIn(l *foodLine) bool {
+	_, ok := foods.Find(f.name)
+	return ok && !l.composed && !l.measure && l.at == nil && l.air == nil && slices.ContainsFunc(ownHeadings, l.Filled)
+}
+
+// weighed makes the food of the built-in one of its name, with what its row says of it; false if the row says anything else.
 func (f *food) weighed() bool {
 	l := f.lines[0]
-	builtIn, ok := foods.Find(f.name)
-	if !ok || len(f.lines) > 1 || l.measure || l.rho == nil || l.at != nil || l.air != nil {
+	if len(f.lines) > 1 || !f.ofBuiltIn(l) {
 		return false
 	}
+	builtIn, _ := foods.Find(f.name)
 	l.note("Water", "", builtIn.Composition.String(), "blank: the composition of the built-in food of this name is taken")
-	f.made(builtIn.Weighed(foods.Weighing{DensityKgM3: *l.rho, FreezingC: l.freezing, Source: l.source}))
+	f.made(builtIn.Weighed(foods.Weighing{DensityKgM3: l.rho, FreezingC: l.freezing, Source: l.source}))
 	return true
 }
 
@@ -148,8 +158,8 @@ func (f *food) agrees(l *foodLine) bool {
 		l.Fault(head, l.Entry(head).Text, foodMixed)
 	case l.composed && l != first || first.composed && l != first:
 		l.Fault("Food", f.name, foodTwice, strconv.Itoa(first.row.N))
-	case !l.composed && !l.measure && !l.Filled("Density"):
-		l.Fault("", "", foodNothing)
+	case !l.composed && !l.measure && !l.Filled("Density") && !f.ofBuiltIn(l):
+		l.Fault("Food", f.name, foodNothing)
 	}
 	for _, h := range []string{"Freezing point", "Water activity", "Flows"} {
 		for _, o := range f.lines {

@@ -102,7 +102,7 @@ var (
 	processUnused   = saying{"is a process that no product uses{1}", "correct the name, or take the row out"}
 	productUnknown  = saying{"is not a product of the sheet Products{1}", "correct the name"}
 	foodMixed       = saying{"is a measured property, but the row gives a composition too", "keep the parts of the composition, or Conductivity, Density and Specific heat"}
-	foodNothing     = saying{"The food has neither a composition nor measured properties", "fill Water, Protein, Fat, Carbohydrate, Fibre and Ash, or Conductivity, Density and Specific heat"}
+	foodNothing     = saying{"has neither a composition nor measured properties", "fill Water, Protein, Fat, Carbohydrate, Fibre and Ash, or Conductivity, Density and Specific heat; the composition may be left out of a row that has the name of a built-in food"}
 	foodPartly      = saying{"{1} is missing: measured properties are Conductivity, Density and Specific heat together", "fill it"}
 	foodTwice       = saying{"is there twice; a composition takes one row (the first is in row {1})", "keep one row, or give measured properties with At temperature"}
 	foodNoAt        = saying{"At temperature is missing: {1} has several rows, which make a table", "fill it in every row of the food"}
