@@ -94,12 +94,17 @@ func (p *Product) extremesAt(times []float64, coldest bool) []model.Place {
 	}
 	out := make([]model.Place, len(at))
 	for i := range at {
-		least := max(sameAsCentreK, p.History.ErrorK, sameAsCentre*(s.Hottest[i]-s.Coldest[i]))
-		if len(s.Points) == 0 || math.Abs(s.Points[0][i]-c[i]) >= least {
+		if !p.centreLike(s, i, c[i]) {
 			out[i] = at[i]
 		}
 	}
 	return out
+}
+
+// centreLike tells whether the coldest or hottest temperature of a sample, °C, is the centre's as well as can be told.
+func (p *Product) centreLike(s model.Samples, i int, c float64) bool {
+	least := max(sameAsCentreK, p.History.ErrorK, sameAsCentre*(s.Hottest[i]-s.Coldest[i]))
+	return len(s.Points) > 0 && i < len(s.Points[0]) && math.Abs(s.Points[0][i]-c) < least
 }
 
 // beyond is how far a place lies outside of the box between two others, m.

@@ -44,3 +44,18 @@ func TestBeyond(t *testing.T) {
 		}
 	}
 }
+
+// TestCentreInTableAndSentence: the places in the table of steps are called the centre where the sentence on how they move does so.
+func TestCentreInTableAndSentence(t *testing.T) {
+	p := roast(t, model.Slab, rules.Met)
+	x := &sheet{doc: &doc{head: roastHead()}, p: p, decides: p.decides()}
+	p.History.ErrorK = 0.02
+	at := []model.Place{{UpM: 0.02}, {UpM: 0.02}}
+	p.Samples.Points = [][]float64{{5.06, 5.14}}
+	p.Samples.Coldest, p.Samples.Hottest = []float64{5, 5}, []float64{6, 6}
+	for i, centre := range []bool{true, false} { // 0.06 K off and 0.14 K off, where 0.1 K is nothing
+		if got := x.extremePlace(i, p.Samples.Coldest, at); (got == p.Product.Where(model.Place{})) != centre {
+			t.Errorf("%g °C at the centre: %s", p.Samples.Points[0][i], got)
+		}
+	}
+}

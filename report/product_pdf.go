@@ -942,10 +942,10 @@ func joinedBy(a, b string) string {
 	return a + ", " + b
 }
 
-// extremePlace words where the coldest or hottest place is at a sample; a hundredth of a degree from the centre is the centre,
-// for a food of one temperature has no place of its own.
+// extremePlace words where the coldest or hottest place is at a sample; the centre where the sentence on how the places move
+// says so too, for a food of one temperature has no place of its own.
 func (x *sheet) extremePlace(i int, c []float64, at []model.Place) string {
-	if pts := x.p.Samples.Points; len(pts) > 0 && i < len(pts[0]) && math.Abs(pts[0][i]-c[i]) < 0.01 {
+	if x.p.centreLike(x.p.Samples, i, c[i]) {
 		return x.p.Product.Where(model.Place{})
 	}
 	return x.p.Product.Where(at[i])
