@@ -123,6 +123,7 @@ It supports planning; it does not replace measurement. Your food authority decid
 		CompletionOptions: cobra.CompletionOptions{HiddenDefaultCmd: true},
 	}
 	root.SetFlagErrorFunc(plainFlag)
+	root.SetHelpCommand(helpCommand())
 	root.AddCommand(checkCommand(files), readCommand(), importCommand(files), blankCommand(files), codesCommand(files), foodsCommand(), verifyCommand(), versionCommand())
 	return root
 }

@@ -88,3 +88,22 @@ func plainCommand(root *cobra.Command, err error) error {
 	}
 	return err
 }
+
+// helpCommand is help COMMAND; cobra's own says in its words that it does not know one, and that all went well.
+func helpCommand() *cobra.Command {
+	return &cobra.Command{
+		Use:   "help [COMMAND]",
+		Short: "Help about any command",
+		RunE: func(cmd *cobra.Command, args []string) error {
+			of, rest, err := cmd.Root().Find(args)
+			switch {
+			case err != nil || of == nil:
+				return noCommand(cmd.Root(), args[0])
+			case len(rest) > 0:
+				return noCommand(of, rest[0])
+			}
+			of.InitDefaultHelpFlag()
+			return of.Help()
+		},
+	}
+}
