@@ -59,14 +59,16 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 		plan.Problems = append(plan.Problems, unprinted(plan)...)
 		plan.Problems.Sort(plan.Sheets)
 	}
+	names := filesOf(plan)
+	left, err := keepOnly(plan, o.only)
+	if err != nil {
+		return err
+	}
 	head, err := headOf(plan, o)
 	if err != nil {
 		return err
 	}
-	names := filesOf(plan)
-	if head.LeftOut, err = keepOnly(plan, o.only); err != nil {
-		return err
-	}
+	head.LeftOut = left
 	if err := files.makeFolder(folder); err != nil {
 		return &failure{exitFault, err}
 	}
@@ -246,6 +248,13 @@ func keepOnly(plan *workbook.Plan, only []string) (left []string, err error) {
 			return false
 		}
 		left = append(left, p.Name)
+		return true
+	})
+	plan.NotCalculated = slices.DeleteFunc(plan.NotCalculated, func(n workbook.NotCalculated) bool {
+		if keep(n.Product) {
+			return false
+		}
+		left = append(left, n.Product)
 		return true
 	})
 	return left, nil

@@ -83,3 +83,27 @@ func writePlan(t *testing.T, dir string, sheets map[string]string) {
 		}
 	}
 }
+
+// TestOnlyBesideABrokenProduct: a product that was not asked for is left out, whatever is wrong with it; its errors are told all the same.
+func TestOnlyBesideABrokenProduct(t *testing.T) {
+	dir := filepath.Join(t.TempDir(), "plan")
+	if err := os.Mkdir(dir, 0o755); err != nil {
+		t.Fatal(err)
+	}
+	for name, text := range map[string]string{
+		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nBroken,B,slab,31,Nothing like it,8\nSound,B,slab,31,Mash,8\n",
+		"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Source\nMash,0.52,1040,3600,invented\n",
+		"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\nB,chill,cool,700,film,3,27\n",
+		"Limits":   "Limit,Rule,Stage,Applies to,To (°C),Code,Clause,Edition\ncold,by the end,cool,all,8,invented,1,1\n",
+	} {
+		if err := os.WriteFile(filepath.Join(dir, name+".csv"), []byte(text), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+	var out, errs bytes.Buffer
+	code := run([]string{"check", dir, "--date", "2026-01-31", "--no-pdf", "--only", "Sound"}, nil, &out, &errs)
+	if code != exitInput || strings.Contains(out.String(), "NOT CALCULATED") || !strings.Contains(out.String(), "left out by --only, and nothing is said of it here: Broken.") ||
+		!strings.Contains(out.String(), "1 product: 1 met") || !strings.Contains(errs.String(), "Nothing like it") {
+		t.Errorf("exit %d\n%s%s", code, out.String(), errs.String())
+	}
+}
