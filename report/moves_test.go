@@ -59,3 +59,23 @@ func TestCentreInTableAndSentence(t *testing.T) {
 		}
 	}
 }
+
+// TestRaisedMediumBesideItsStep: where the medium of a step is not the one that was typed, its row says so.
+func TestRaisedMediumBesideItsStep(t *testing.T) {
+	p := roast(t, model.Slab, rules.Met)
+	x := &sheet{doc: &doc{head: roastHead()}, p: p, decides: p.decides()}
+	sp := p.History.Spans[1]
+	if got := x.mediumAtEnd(&sp); strings.Contains(got, "raised") {
+		t.Error(got)
+	}
+	sp.MediumFromC, sp.MediumToC = ptr(-20.), ptr(-1.)
+	if got := x.mediumAtEnd(&sp); !strings.Contains(got, "raised to the freezing point (typed: down to −20 °C (") {
+		t.Error(got)
+	}
+	const said = ", raised to the freezing point (typed: down to "
+	before := strings.Count(writeText(t, roastHead(), p), said)
+	p.History.Spans[1] = sp
+	if after := strings.Count(writeText(t, roastHead(), p), said); before != 0 || after != 1 {
+		t.Errorf("report.txt says it %d times, and %d times before", after, before)
+	}
+}

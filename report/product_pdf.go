@@ -869,7 +869,15 @@ func (x *sheet) mediumAtEnd(sp *model.Span) string {
 	if math.IsNaN(c) {
 		return say("no medium")
 	}
-	return x.head.stated(c)
+	return x.head.stated(c) + x.head.raised(sp)
+}
+
+// raised says of a step that its medium is not the one that was typed; "" where it is.
+func (h *Head) raised(sp *model.Span) string {
+	if sp.MediumFromC == nil {
+		return ""
+	}
+	return say("medium raised here", h.stated(*sp.MediumFromC))
 }
 
 // sampleAt is the sample at an instant; -1 if there is none.

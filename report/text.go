@@ -234,7 +234,7 @@ func (t *Text) course(x *sheet) {
 		out := []string{fmt.Sprintf(textWords["step"], step, duration(sp.StartS, nearest), duration(sp.EndS, nearest))}
 		if p.History.MediumC != nil {
 			if c := p.History.MediumC(sp.EndS); finite(&c) {
-				out = append(out, fmt.Sprintf(textWords["step medium"], h.stated(c)))
+				out = append(out, fmt.Sprintf(textWords["step medium"], h.stated(c)+h.raised(sp)))
 			}
 		}
 		told := &told{head: h}

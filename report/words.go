@@ -344,6 +344,7 @@ var words = map[string]string{
 	"props":               "conductivity %s W/(m·K), density %s kg/m³, specific heat %s J/(kg·K)%s",
 	"props at":            " at %s",
 	"medium raised":       "surroundings raised from %s to %s",
+	"medium raised here":  ", raised to the freezing point (typed: down to %s)",
 	"medium raised why":   "freezing is not calculated; the true food is at or below these temperatures",
 	"set-point":           "set-point",
 	"measured":            "measured",
