@@ -11,6 +11,7 @@ import (
 // WorstCase is how a limit fares between the ends of what varies.
 type WorstCase struct {
 	Limit   *rules.Limit
+	At      []int8        // where each spread of the product stands: −1 Minus, 0 as typed, 1 Plus
 	Ends    []string      // the unfavourable ends that it is judged at, in words; none: the typed values are the least favourable
 	Nominal rules.Finding // what the typed values give
 	Drivers []Driver      // what varies, that which alone leaves the least room first

@@ -282,6 +282,7 @@ type runner struct {
 	advice   []string               // by row: the advice that is not met, a line each
 	names    map[string]string      // by product: the file name of its report, without its ending
 	refused  []report.NotCalculated // found while calculating
+	corners  map[cell.Ref]corner    // by row of Limits: where to judge what varies, once it was found; nil: it is looked for
 	warned   cell.Errors            // as well, of products that were calculated
 }
 

@@ -248,6 +248,9 @@ func (r *runner) worst(p *workbook.Product, out *report.Product, typed []rules.F
 	s := &search{r: r, p: p, options: o, solved: map[string][]rules.Finding{}}
 	zero := make(corner, len(p.Spreads))
 	s.solved[zero.key()] = append([]rules.Finding{}, typed...)
+	if r.corners != nil {
+		return s.known(out, typed)
+	}
 	worst, err := s.corners()
 	if err != nil {
 		return err
@@ -256,7 +259,7 @@ func (r *runner) worst(p *workbook.Product, out *report.Product, typed []rules.F
 	runs := map[string]*prediction{}
 	for k, c := range worst {
 		f := s.at(c)[k]
-		w := report.WorstCase{Limit: f.Limit, Ends: c.words(p), Nominal: typed[k], Drivers: s.drivers(k)}
+		w := report.WorstCase{Limit: f.Limit, At: c, Ends: c.words(p), Nominal: typed[k], Drivers: s.drivers(k)}
 		if !c.nominal() {
 			if runs[c.key()] == nil {
 				q := p.Varied(c.places())
@@ -273,6 +276,37 @@ func (r *runner) worst(p *workbook.Product, out *report.Product, typed []rules.F
 	}
 	out.Judgement = rules.Conclude(findings, r.plan.Groups)
 	return nil
+}
+
+// known judges each limit at the corner that was found for it before, or as typed where that is worse.
+func (s *search) known(out *report.Product, typed []rules.Finding) error {
+	findings := slices.Clone(typed)
+	for k := range findings {
+		c := s.r.corners[findings[k].Limit.At]
+		if c == nil {
+			continue
+		}
+		if err := s.need([]corner{c}); err != nil {
+			return err
+		}
+		if f := &s.at(c)[k]; rules.Worse(f, &findings[k]) {
+			findings[k] = *f
+		}
+	}
+	out.Judgement = rules.Conclude(findings, s.r.plan.Groups)
+	return nil
+}
+
+// atCorners is the same job at the corners that were found for a product: what helps most is looked for there, at the cost of a few runs.
+func (r *runner) atCorners(now *report.Product) *runner {
+	if len(now.Worst) == 0 {
+		return r
+	}
+	q := &runner{plan: r.plan, head: r.head, options: r.options, corners: map[cell.Ref]corner{}}
+	for i := range now.Worst {
+		q.corners[now.Worst[i].Limit.At] = now.Worst[i].At
+	}
+	return q
 }
 
 // drivers rank what varies by the room that each leaves alone, the least first.

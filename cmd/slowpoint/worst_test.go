@@ -1,0 +1,155 @@
+package main
+
+import (
+	"fmt"
+	"math"
+	"testing"
+
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model"
+	"slowpoint/rules"
+)
+
+// wall is a slab that is heated, then chilled, on both faces by one film. The food is no real one.
+func wall() (*runner, *workbook.Product) {
+	r, p := &runner{plan: &workbook.Plan{}}, &workbook.Product{}
+	p.Name, p.Shape, p.StartC = "Wall", model.Slab, 5
+	p.Size.ThicknessM = 0.04
+	p.Food = &model.Material{Name: "Mash", Source: "made up", Props: func(float64) model.Properties {
+		return model.Properties{KWmK: 0.5, RhoKgM3: 1050, CJkgK: 3600}
+	}}
+	film := func(w float64) *float64 { return &w }
+	step := func(name string, stage *model.Stage, s, c, w float64) model.Step {
+		return model.Step{Name: name, Stage: stage, DurationS: s, Exposure: model.Exposure{Surface: model.Film, FilmW: film(w), Medium: model.Course{C: []float64{c}}}}
+	}
+	p.Steps = []model.Step{step("Oven", model.Cook, 5400, 120, 25), step("Chill", model.Cool, 4*5400, 3, 30)}
+	c75, c60, c10, two, four := 75.0, 60.0, 10.0, 120.0, 14400.0
+	r.plan.Limits = []rules.Limit{
+		{Name: "Hot", Kind: rules.Hold, Stages: []*model.Stage{model.Cook}, Applies: rules.Applies{All: true}, FromC: &c75, TimeS: &two, Counting: rules.Total},
+		{Name: "Cold", Kind: rules.CoolWithin, Stages: []*model.Stage{model.Cool}, Applies: rules.Applies{All: true}, FromC: &c60, ToC: &c10, TimeS: &four, Clock: rules.Clock{Crossing: true}},
+	}
+	return r, p
+}
+
+// vary makes a quantity vary, in the unit that the program computes in or as a share.
+func vary(name string, step int, minus, plus float64, share bool) workbook.Spread {
+	for _, v := range workbook.Spreads {
+		if v.Name == name {
+			return workbook.Spread{Of: v, Step: step, Minus: workbook.Deviation{Typed: "m", By: minus, Share: share}, Plus: workbook.Deviation{Typed: "p", By: plus, Share: share}}
+		}
+	}
+	panic(name)
+}
+
+// exactCentre is the centre of the wall at the end of the heating: the series of Carslaw & Jaeger 1959, section 3.11 (as in Crank 1975,
+// section 4.3.6), first 40 terms, worked out apart from the program.
+func exactCentre(thicknessM, k, startC, mediumC, filmW, s float64) float64 {
+	half := thicknessM / 2
+	bi, fo := filmW*half/k, k/(1050*3600)*s/(half*half)
+	sum := 0.0
+	for n := range 40 {
+		lo, hi := float64(n)*math.Pi, float64(n)*math.Pi+math.Pi/2
+		for range 100 {
+			if mid := (lo + hi) / 2; mid*math.Sin(mid) < bi*math.Cos(mid) == (n%2 == 0) {
+				lo = mid
+			} else {
+				hi = mid
+			}
+		}
+		z := (lo + hi) / 2
+		sum += 4 * math.Sin(z) / (2*z + math.Sin(2*z)) * math.Exp(-z*z*fo)
+	}
+	return mediumC + (startC-mediumC)*sum
+}
+
+// Over a fine grid of what varies no piece has a colder centre, by the exact series, than the one at the corner that was found; and the
+// margin of the hold at that corner is what the series says of it: the centre of the heated wall is warmest at the end of the heating, and
+// a hold of 0 min is that temperature.
+func TestCornerAgainstAFineGridOfTheExactSeries(t *testing.T) {
+	r, p := wall()
+	none := 0.0
+	r.plan.Limits[0].TimeS = &none
+	r.plan.Limits[0].Where = rules.Where{Name: "centre"}
+	p.Spreads = []workbook.Spread{vary("thickness", -1, 0.001, 0.003, false), vary("conductivity", -1, 0.1, 0.05, true), vary("start temperature", -1, 2, 3, false),
+		vary("medium temperature", 0, 10, 4, false), vary("film coefficient", 0, 0.25, 0.2, true)}
+	d, err := r.judged(p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	least := math.Inf(1)
+	const steps = 6
+	at := func(i int, minus, plus float64) float64 { return -minus + (minus+plus)*float64(i)/steps }
+	for n := range 16807 { // 7⁵
+		least = min(least, exactCentre(0.04+at(n%7, 0.001, 0.003), 0.5*(1+at(n/7%7, 0.1, 0.05)), 5+at(n/49%7, 2, 3), 120+at(n/343%7, 10, 4), 25*(1+at(n/2401%7, 0.25, 0.2)), 5400))
+	}
+	f := &d.Judgement.Findings[0]
+	if got := 75 + *f.MarginK; math.Abs(got-least) > 0.01 {
+		t.Errorf("centre %.4f °C at the corner %v, the grid has %.4f °C", got, d.Worst[0].At, least)
+	}
+	if typed := 75 + *d.Worst[0].Nominal.MarginK; math.Abs(typed-exactCentre(0.04, 0.5, 5, 120, 25, 5400)) > 0.01 {
+		t.Errorf("centre %.4f °C as typed", typed)
+	}
+}
+
+// Each limit's corner is the worst of all combinations of ends, of which there are 3⁶, and the two limits differ in theirs: a warmer
+// start helps the heating and hurts the chilling.
+func TestCornerIsTheWorstOfAllCombinations(t *testing.T) {
+	r, p := wall()
+	p.Spreads = []workbook.Spread{vary("thickness", -1, 0.001, 0.003, false), vary("start temperature", -1, 2, 3, false), vary("medium temperature", 0, 10, 4, false),
+		vary("medium temperature", 1, 1, 2, false), vary("film coefficient", 1, 0.25, 0.2, true), vary("specific heat", -1, 0.05, 0.05, true)}
+	d, err := r.judged(p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if fmt.Sprint(d.Worst[0].At) == fmt.Sprint(d.Worst[1].At) {
+		t.Errorf("both limits at %v", d.Worst[0].At)
+	}
+	s := &search{r: r, p: p, solved: map[string][]rules.Finding{}}
+	var all []corner
+	for n := range 729 {
+		c := corner{}
+		for k := n; len(c) < 6; k /= 3 {
+			c = append(c, int8(k%3)-1)
+		}
+		all = append(all, c)
+	}
+	if err := s.need(all); err != nil {
+		t.Fatal(err)
+	}
+	for k := range d.Worst {
+		best := all[0]
+		for _, c := range all {
+			if rules.Worse(&s.at(c)[k], &s.at(best)[k]) {
+				best = c
+			}
+		}
+		if f, g := &s.at(best)[k], &s.at(d.Worst[k].At)[k]; rules.Worse(f, g) {
+			t.Errorf("%s: corner %v, worse is %v", f.Limit.Name, d.Worst[k].At, best)
+		}
+	}
+}
+
+// What is met as typed and missed at the unfavourable ends is not met.
+func TestVerdictIsThatOfTheUnfavourableEnd(t *testing.T) {
+	r, p := wall()
+	d, err := r.judged(p)
+	if err != nil || d.Judgement.Verdict != rules.Met || len(d.Worst) > 0 {
+		t.Fatalf("as typed: %v %v", d.Judgement.Verdict, err)
+	}
+	p.Spreads = []workbook.Spread{vary("film coefficient", 0, 0.45, 0, true)}
+	d, err = r.judged(p)
+	if err != nil || d.Judgement.Verdict != rules.NotMet || d.Worst[0].Nominal.Verdict != rules.Met {
+		t.Errorf("%v, as typed %v, %v", d.Judgement.Verdict, d.Worst[0].Nominal.Verdict, err)
+	}
+}
+
+func BenchmarkWorstCase(b *testing.B) {
+	r, p := wall()
+	p.Spreads = []workbook.Spread{vary("thickness", -1, 0.001, 0.003, false), vary("start temperature", -1, 2, 3, false), vary("medium temperature", 0, 10, 4, false),
+		vary("medium temperature", 1, 1, 2, false), vary("film coefficient", 0, 0.25, 0.2, true), vary("film coefficient", 1, 0.25, 0.2, true)}
+	for b.Loop() {
+		if _, err := r.judged(p); err != nil {
+			b.Fatal(err)
+		}
+	}
+}
