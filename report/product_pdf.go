@@ -979,7 +979,7 @@ func (x *sheet) profileSentence(times []float64) string {
 	}
 	if name := x.p.nameOf(hist); name != "" {
 		if _, ok := worstOf(name); ok {
-			name = "worst"
+			return say("profile worst") + out
 		}
 		out = say("profile "+name) + out
 	}

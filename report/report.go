@@ -160,7 +160,7 @@ func (p *Product) runWords(name string, always bool) string {
 		return say("run usual")
 	}
 	if _, ok := worstOf(name); ok {
-		name = "worst"
+		return say("run worst")
 	}
 	return say("run " + name)
 }
