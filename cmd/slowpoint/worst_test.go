@@ -1,8 +1,12 @@
 package main
 
 import (
+	"bytes"
 	"fmt"
 	"math"
+	"os"
+	"path/filepath"
+	"strings"
 	"testing"
 
 	"slowpoint/cmd/slowpoint/workbook"
@@ -150,6 +154,73 @@ func BenchmarkWorstCase(b *testing.B) {
 	for b.Loop() {
 		if _, err := r.judged(p); err != nil {
 			b.Fatal(err)
+		}
+	}
+}
+
+// spreadPlan is a folder with a plan whose quantities vary. Food, limits and figures are no real ones.
+func spreadPlan(t *testing.T) string {
+	t.Helper()
+	dir := t.TempDir()
+	for name, text := range map[string]string{
+		"Products": `Product,Family,Process,Shape,Thickness (mm),Diameter (mm),Food,Start temperature (°C)
+Tray,trays,Cook-chill,slab,40,,Mash,5
+Roll,rolls,Cook-chill,cylinder,,60,Mash,5
+`,
+		"Foods": `Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Freezing point (°C),Flows,Source
+Mash,0.5,1050,3600,-1,no,own measurement
+`,
+		"Steps": `Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)
+Cook-chill,Oven,cook,90,film,120,25
+Cook-chill,Chiller,cool,240,film,3,15
+`,
+		"Limits": `Limit,Rule,Stage,Applies to,From (°C),To (°C),Time (min),Clock starts,Counting,Code,Clause,Edition
+Hot enough,hold,cook,all,75,,2,,total,House rules,4,2026
+Cold soon,cool,cool,all,60,10,240,crossing,,House rules,5,2026
+`,
+		"Spread": `Applies to,Quantity,Minus,Plus,Basis
+Tray,thickness,1 mm,2 mm,ruler
+Roll,diameter,1 mm,3 mm,ruler
+all,start temperature,2 °C,2 °C,probe log
+Cook-chill/Oven,medium temperature,10 °C,5 °C,survey
+Cook-chill/Chiller,medium temperature,1 °C,3 °C,log of a week
+Cook-chill,film coefficient,25 %,25 %,scatter of correlations
+`,
+	} {
+		if err := os.WriteFile(filepath.Join(dir, name+".csv"), []byte(text), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+	return dir
+}
+
+// The same plan gives the same bytes, whatever processor is ready first, and every document tells the ends and their basis.
+func TestWorstCaseInTheDocuments(t *testing.T) {
+	plan := spreadPlan(t)
+	var first map[string][]byte
+	for range 2 {
+		dir := t.TempDir()
+		if code := run([]string{"check", "--out", dir, "--date", "2026-01-31", plan}, nil, &bytes.Buffer{}, os.Stderr); code != exitNotMet {
+			t.Fatalf("exit code %d", code)
+		}
+		files := map[string][]byte{}
+		for _, name := range []string{"report.txt", "results.json", "results.xlsx", "Tray.pdf", "Roll.pdf", "summary.pdf"} {
+			b, err := os.ReadFile(filepath.Join(dir, name))
+			if err != nil {
+				t.Fatal(err)
+			}
+			files[name] = b
+			if first != nil && !bytes.Equal(b, first[name]) {
+				t.Errorf("%s differs from one run to the next", name)
+			}
+		}
+		first = files
+	}
+	for _, name := range []string{"report.txt", "results.json"} {
+		for _, want := range []string{"2 mm thicker", "Oven 10 °C colder", "Chiller 3 °C warmer", "log of a week", "With the values as typed: met"} {
+			if !strings.Contains(string(first[name]), want) {
+				t.Errorf("%s does not say %q", name, want)
+			}
 		}
 	}
 }
