@@ -127,7 +127,15 @@ type (
 		Value   json.RawMessage `json:"typed_value"`
 		MarginK json.RawMessage `json:"typed_margin_K"`
 		MarginS json.RawMessage `json:"typed_margin_s"`
+		Share   *shareJSON      `json:"drawn,omitempty"`
 		Drivers []driverJSON    `json:"drivers"`
+	}
+	shareJSON struct {
+		Pieces int             `json:"pieces"`
+		Met    int             `json:"met"`
+		Low    json.RawMessage `json:"share_low"`
+		High   json.RawMessage `json:"share_high"`
+		Seed   uint64          `json:"seed"`
 	}
 	driverJSON struct {
 		Quantity string    `json:"quantity"`
@@ -540,6 +548,9 @@ func worstOfAll(p *Product) []worstJSON {
 		f := &w.Nominal
 		one := worstJSON{Limit: w.Limit.Name, Ends: append([]string{}, w.Ends...), Verdict: f.Verdict.String(), Value: tenFigures(f.Value),
 			MarginK: fixedNumber(f.MarginK, 4), MarginS: fixedNumber(f.MarginS, 4), Drivers: []driverJSON{}}
+		if s := w.Share; s != nil {
+			one.Share = &shareJSON{s.Pieces, s.Met, fixedNumber(&s.Low, 6), fixedNumber(&s.High, 6), s.Seed}
+		}
 		for _, d := range w.Drivers {
 			dj := driverJSON{Quantity: d.Quantity, At: d.At.String(), Basis: d.Basis, Ends: []endJSON{}}
 			for _, e := range d.Ends {

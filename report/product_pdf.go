@@ -625,6 +625,7 @@ func (x *sheet) cardRows(f *rules.Finding) [][2]string {
 		{say("card margin"), x.marginWords(f)},
 		{say("card ends"), x.endsWords(f)},
 		{say("card typed"), x.typedWords(f)},
+		{say("card share"), x.shareWords(f)},
 		{say("card place"), x.placeAndTime(f)},
 		{say("card clock"), x.clockWords(f)},
 		{say("card notes"), strings.Join(f.Notes, "; ")},

@@ -267,6 +267,8 @@ var words = map[string]string{
 	"profile worst":        "At the unfavourable ends of what varies: ",
 	"worst why":            "This is at the unfavourable ends of what varies: %s. With the values as typed: %s.",
 	"worst none":           "none: the values as typed are the least favourable",
+	"card share":           "Drawn pieces",
+	"share":                "%d of %d pieces drawn from between the ends meet it: %s %%, the true share lies between %s and %s %% (95 %%, Wilson). Assumed: every value between Minus and Plus equally likely, quantities apart from one another; Latin hypercube, seed %d. The verdict is that of the unfavourable ends, not of this share",
 	"card ends":            "Unfavourable ends",
 	"card typed":           "As typed",
 	"drivers title":        "What drives each margin",

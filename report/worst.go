@@ -14,7 +14,25 @@ type WorstCase struct {
 	At      []int8        // where each spread of the product stands: −1 Minus, 0 as typed, 1 Plus
 	Ends    []string      // the unfavourable ends that it is judged at, in words; none: the typed values are the least favourable
 	Nominal rules.Finding // what the typed values give
+	Share   *Share        // of drawn pieces; nil if none were drawn
 	Drivers []Driver      // what varies, that which alone leaves the least room first
+}
+
+// Share is how many of some drawn pieces meet a limit.
+type Share struct {
+	Pieces, Met int     // drawn pieces that the limit applied to, and those of them that meet it
+	Low, High   float64 // of the true share, with 95 %
+	Seed        uint64
+}
+
+// shareWords are the share of drawn pieces for the card of a limit; "" if none were drawn.
+func (x *sheet) shareWords(f *rules.Finding) string {
+	w := x.p.worstCase(f)
+	if w == nil || w.Share == nil {
+		return ""
+	}
+	s := w.Share
+	return say("share", s.Met, s.Pieces, decimal(100*float64(s.Met)/float64(s.Pieces), 1, down), decimal(100*s.Low, 1, down), decimal(100*s.High, 1, up), s.Seed)
 }
 
 // Driver is what one quantity does alone to the room of a limit.

@@ -512,7 +512,7 @@ func TestReadmeResults(t *testing.T) {
 	}
 	have := map[string]bool{}
 	keys(all, "", have)
-	if run([]string{"check", "--no-pdf", "--out", dir, spreadPlan(t)}, nil, &bytes.Buffer{}, os.Stderr) != exitNotMet {
+	if run([]string{"check", "--no-pdf", "--samples", "5", "--out", dir, spreadPlan(t)}, nil, &bytes.Buffer{}, os.Stderr) != exitNotMet {
 		t.Error("the plan with a spread is not judged")
 	}
 	if b, err = os.ReadFile(filepath.Join(dir, "results.json")); err != nil {

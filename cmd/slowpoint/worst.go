@@ -96,10 +96,26 @@ func (s *search) need(list []corner) error {
 			todo = append(todo, c)
 		}
 	}
-	found, errs := make([][]rules.Finding, len(todo)), make([]error, len(todo))
+	at := make([][]float64, len(todo))
+	for i, c := range todo {
+		at[i] = c.places()
+	}
+	found, err := s.solve(at)
+	if err != nil {
+		return err
+	}
+	for i, c := range todo {
+		s.solved[c.key()] = append([]rules.Finding{}, found[i]...) // not nil where no limit applies
+	}
+	return nil
+}
+
+// solve judges the product at each of some places between the ends, on all processors. Of what fails the first in order is told.
+func (s *search) solve(places [][]float64) ([][]rules.Finding, error) {
+	found, errs := make([][]rules.Finding, len(places)), make([]error, len(places))
 	var working sync.WaitGroup
 	slots := make(chan struct{}, runtime.GOMAXPROCS(0))
-	for i, c := range todo {
+	for i, at := range places {
 		slots <- struct{}{}
 		working.Go(func() {
 			defer func() {
@@ -108,27 +124,35 @@ func (s *search) need(list []corner) error {
 				}
 				<-slots
 			}()
-			q := s.p.Varied(c.places())
+			q := s.p.Varied(at)
 			run, err := s.r.predict(&q, s.options)
 			if err != nil {
-				errs[i] = s.refusal(c, err)
+				errs[i] = s.refusal(at, err)
 				return
 			}
 			found[i] = run.find(s.r.plan.Limits)
 		})
 	}
 	working.Wait()
-	for i, c := range todo {
-		if errs[i] != nil {
-			return errs[i]
+	for _, err := range errs {
+		if err != nil {
+			return nil, err
 		}
-		s.solved[c.key()] = append([]rules.Finding{}, found[i]...) // not nil where no limit applies
 	}
-	return nil
+	return found, nil
 }
 
 // refusal words why a corner cannot be calculated, at the row of the first spread that it moves.
-func (s *search) refusal(c corner, err error) error {
+func (s *search) refusal(at []float64, err error) error {
+	c := make(corner, len(at))
+	for i, v := range at {
+		switch {
+		case v < 0:
+			c[i] = -1
+		case v > 0:
+			c[i] = 1
+		}
+	}
 	var es cell.Errors
 	i := slices.IndexFunc(c, func(v int8) bool { return v != 0 })
 	if !errors.As(err, &es) || i < 0 || len(es) == 0 {
@@ -273,6 +297,11 @@ func (r *runner) worst(p *workbook.Product, out *report.Product, typed []rules.F
 		}
 		findings[k] = f
 		out.Worst = append(out.Worst, w)
+	}
+	if r.options != nil && r.options.samples > 0 {
+		if err := s.share(r.options.samples, r.options.seed, out.Worst); err != nil {
+			return err
+		}
 	}
 	out.Judgement = rules.Conclude(findings, r.plan.Groups)
 	return nil

@@ -224,3 +224,34 @@ func TestWorstCaseInTheDocuments(t *testing.T) {
 		}
 	}
 }
+
+// Where only the start temperature varies the centre is linear in it, by the exact series, so the share of pieces that get hot enough is
+// known: that of the start temperatures above the one at which the limit is just met. One piece of a Latin hypercube is all that may stand
+// on the other side.
+func TestShareAgainstTheLinearOne(t *testing.T) {
+	r, p := wall()
+	none, limit := 0.0, exactCentre(0.04, 0.5, 5.7, 120, 25, 5400)
+	r.plan.Limits = r.plan.Limits[:1]
+	r.plan.Limits[0].TimeS, r.plan.Limits[0].FromC, r.plan.Limits[0].Where = &none, &limit, rules.Where{Name: "centre"}
+	p.Spreads = []workbook.Spread{vary("start temperature", -1, 2, 3, false)}
+	const n = 400
+	r.options = &checkOptions{samples: n, seed: 3}
+	d, err := r.judged(p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	s := d.Worst[0].Share
+	if want := n * (8 - 5.7) / 5; math.Abs(float64(s.Met)-want) > 4 || s.Pieces != n { // 4: as the model errs by up to 0.005 K, that is 0.05 K of the start
+		t.Errorf("%d of %d, want %.1f", s.Met, s.Pieces, want)
+	}
+	if share := (8 - 5.7) / 5; s.Low > share || s.High < share {
+		t.Errorf("%v to %v does not hold %v", s.Low, s.High, share)
+	}
+}
+
+// The interval of 81 of 263 is that of R. G. Newcombe 1998, Stat Med 17:857, table I (from memory): 0.2553 to 0.3662.
+func TestWilson(t *testing.T) {
+	if low, high := wilson(81, 263); math.Abs(low-0.2553) > 5e-5 || math.Abs(high-0.3662) > 5e-5 {
+		t.Errorf("%.4f to %.4f", low, high)
+	}
+}

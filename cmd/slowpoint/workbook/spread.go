@@ -243,6 +243,20 @@ func (p *Product) Varied(at []float64) Product {
 	return q
 }
 
+// Span is how far a spread reaches below and above the typed value, both in one unit.
+func (p *Product) Span(i int) (minus, plus float64) {
+	s := &p.Spreads[i]
+	if s.Minus.Share == s.Plus.Share || s.Of.value == nil {
+		return s.Minus.By, s.Plus.By
+	}
+	var step *model.Step
+	if s.Step >= 0 {
+		step = &p.Steps[s.Step]
+	}
+	v := s.Of.value(&p.Product, step)
+	return s.Minus.of(v), s.Plus.of(v)
+}
+
 // Named is the quantity in words, with its step: "medium temperature of Chill".
 func (s *Spread) Named() string {
 	if s.StepName == "" {
