@@ -238,6 +238,14 @@ func stated(w float64, source string) func(*filmCase) (float64, string) {
 // innerWords tells of the film inside a vessel.
 var innerWords = fmt.Sprintf("; inside the vessel %g W/(m²·K) in series, stated low: textbooks give 50 to 100 for liquids left still (Çengel, Heat Transfer, typical values), and stirring makes it more", innerW)
 
+// filmFactor is what multiplies a film that is worked out.
+func (e *Exposure) filmFactor() float64 {
+	if e.FilmFactor == 0 {
+		return 1
+	}
+	return e.FilmFactor
+}
+
 // filmUsed tells how an exposure meets the food.
 func (e *Exposure) filmUsed(face *Face, c *filmCase) FilmUsed {
 	u := FilmUsed{Face: face}
@@ -254,6 +262,7 @@ func (e *Exposure) filmUsed(face *Face, c *filmCase) FilmUsed {
 		u.FilmW, u.Typed, u.Source = math.Inf(1), true, "contact resistance typed by the user"
 	default:
 		u.FilmW, u.Source = e.Surface.film(c)
+		u.FilmW *= e.filmFactor()
 		u.Caution = "film coefficient assumed, not measured"
 	}
 	if e.innerFilm(c) {

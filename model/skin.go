@@ -212,7 +212,7 @@ func (s *skin) convectionW(outerC float64, a *around) float64 {
 	if s.air == nil {
 		return s.filmW
 	}
-	return s.air.at(outerC, a.mediumC)
+	return s.air.at(outerC, a.mediumC) * s.exp.filmFactor()
 }
 
 // outer is the heat that arrives at the outer surface, W/m².

@@ -576,7 +576,7 @@ func sameCourse(a, b *Course) bool {
 // sameExposure tells whether two faces meet the same.
 func sameExposure(a, b *Exposure) bool {
 	same := func(x, y *float64) bool { return x == nil && y == nil || x != nil && y != nil && *x == *y }
-	return a == b || a.Surface == b.Surface && same(a.FilmW, b.FilmW) && same(a.AirMS, b.AirMS) && same(a.WrapM2KW, b.WrapM2KW) &&
+	return a == b || a.Surface == b.Surface && same(a.FilmW, b.FilmW) && a.FilmFactor == b.FilmFactor && same(a.AirMS, b.AirMS) && same(a.WrapM2KW, b.WrapM2KW) &&
 		same(a.RadiatingC, b.RadiatingC) && same(a.Emissivity, b.Emissivity) && same(a.RH, b.RH) && a.wet() == b.wet() && slices.Equal(a.Medium.RH, b.Medium.RH) &&
 		sameCourse(&a.Medium, &b.Medium)
 }

@@ -112,6 +112,7 @@ type Exposure struct {
 	Medium     Course // no points for insulated
 	Measured   bool   // the medium temperature was measured; false: it is a set-point
 	FilmW      *float64
+	FilmFactor float64  // multiplies a film that the program works out, for what if it is less; 0 = 1
 	AirMS      *float64 // air speed, m/s
 	RH         *float64 // relative humidity, %
 	RadiatingC *float64

@@ -51,18 +51,19 @@ func significant(v float64) string {
 // runSentence sets a further run beside the usual one at the deciding limit.
 func (x *sheet) runSentence(r rules.Run) string {
 	further, usual := 0, 0
+	at := x.p.inTyped(x.decides.place, x.decides.history)
 	for i := range x.p.Judgement.Findings {
 		switch f := &x.p.Judgement.Findings[i]; {
 		case f.Verdict == rules.NotApplicable:
-		case f.Run == r.Name:
+		case kindOf(f.Run) == r.Name:
 			further++
-		case f.Run == "":
+		case kindOf(f.Run) == "":
 			usual++
 		}
 	}
 	end := x.p.History.EndS()
-	return say("also run "+r.Name, further, usual, x.decides.placeName, x.head.temperature(x.p.History.At(x.decides.place, end), nearest),
-		x.head.temperature(r.History.At(x.decides.place, end), nearest))
+	return say("also run "+r.Name, further, usual, x.decides.placeName, x.head.temperature(x.p.History.At(at, end), nearest),
+		x.head.temperature(r.History.At(at, end), nearest))
 }
 
 // factors are the critical factors with the values used and where they come from.

@@ -927,14 +927,16 @@ func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *mo
 			if r.Name == rules.LowConductivity {
 				name = say("line "+r.Name, d.called())
 			}
-			course(name, r.History, d.place)
+			course(name, r.History, p.inTyped(d.place, d.history))
 		}
 	}
 	switch name := p.nameOf(d.history); {
 	case name != "" && p.run(rules.WellMixed) != nil:
-		course(say("line conducting", d.called()), p.History, d.place)
+		course(say("line conducting", d.called()), p.History, p.inTyped(d.place, d.history))
+	case len(p.atWorst) > 0 && name != "" && kindOf(name) != name:
+		course(say("line typed", d.called()), p.History, p.inTyped(d.place, d.history))
 	case name != "":
-		course(say("line usual", d.called()), p.History, d.place)
+		course(say("line usual", d.called()), p.History, p.inTyped(d.place, d.history))
 	}
 }
 
@@ -1093,10 +1095,10 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 // passage is the way that the profile of a product is drawn along; nil if there is no profile.
 func (p *Product) passage(d *deciding) *passage {
 	h := d.history
-	if h.Recorded || len(h.Spans) == 0 || h == p.run(rules.WellMixed) {
+	if h.Recorded || len(h.Spans) == 0 || h == p.run(rules.WellMixed) || kindOf(p.nameOf(h)) == rules.WellMixed {
 		return nil
 	}
-	return passageOf(&p.Product, d.place)
+	return passageOf(p.productOf(h), d.place)
 }
 
 // profileTimes are three to six instants: the ends of steps, and the middles of the longest ones where there are too few.

@@ -174,11 +174,11 @@ func (p *Product) decides() *deciding {
 	if f != nil && f.Place != nil {
 		d.place, d.placeName = *f.Place, f.PlaceName
 	}
-	if p.Product.Shape == model.Stirred || d.history != p.History && d.history == p.run(rules.WellMixed) {
+	if p.Product.Shape == model.Stirred || d.history != p.History && kindOf(p.nameOf(d.history)) == rules.WellMixed {
 		d.placeName = say("anywhere")
 	}
 	if d.placeName == "" || d.placeName == "every point" {
-		d.placeName = p.Product.Where(d.place)
+		d.placeName = p.productOf(d.history).Where(d.place)
 	}
 	return d
 }

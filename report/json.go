@@ -120,6 +120,35 @@ type (
 		LowConductivity bool            `json:"low_conductivity"`
 		WellMixed       bool            `json:"well_mixed"`
 	}
+	worstJSON struct {
+		Limit   string          `json:"limit"`
+		Ends    []string        `json:"ends"`
+		Verdict string          `json:"typed_verdict"`
+		Value   json.RawMessage `json:"typed_value"`
+		MarginK json.RawMessage `json:"typed_margin_K"`
+		MarginS json.RawMessage `json:"typed_margin_s"`
+		Share   *shareJSON      `json:"drawn,omitempty"`
+		Drivers []driverJSON    `json:"drivers"`
+	}
+	shareJSON struct {
+		Pieces int             `json:"pieces"`
+		Met    int             `json:"met"`
+		Low    json.RawMessage `json:"share_low"`
+		High   json.RawMessage `json:"share_high"`
+		Seed   uint64          `json:"seed"`
+	}
+	driverJSON struct {
+		Quantity string    `json:"quantity"`
+		At       string    `json:"at"`
+		Basis    string    `json:"basis"`
+		Ends     []endJSON `json:"ends"`
+	}
+	endJSON struct {
+		End     string          `json:"end"`
+		Verdict string          `json:"verdict"`
+		MarginK json.RawMessage `json:"margin_change_K"`
+		MarginS json.RawMessage `json:"margin_change_s"`
+	}
 	groupJSON struct {
 		Group     string `json:"group"`
 		Join      string `json:"join"`
@@ -169,6 +198,9 @@ func (j *JSON) Add(p *Product) error {
 	j.samples(p)
 	list(j, "steps", stepsOf(w.Spans), false)
 	list(j, "findings", findingsOf(p.Judgement.Findings), false)
+	if len(p.Worst) > 0 {
+		list(j, "worst_cases", worstOfAll(p), false)
+	}
 	list(j, "groups", groupsOf(p.Judgement.Groups), false)
 	list(j, "cautions", cautionsOf(Cautions(j.h, p)), false)
 	list(j, "input", readingsOf(p.Readings), true)
@@ -496,12 +528,35 @@ func findingsOf(fs []rules.Finding) []findingJSON {
 		one := findingJSON{Level: f.Level, Verdict: f.Verdict.String(), Value: tenFigures(f.Value), Required: tenFigures(f.Required), Unit: f.Unit,
 			MarginK: fixedNumber(f.MarginK, 4), MarginS: fixedNumber(f.MarginS, 4), AtS: exactNumber(f.AtS), Place: f.PlaceName,
 			ClockStart: exactNumber(f.ClockStartS), ClockEnd: exactNumber(f.ClockEndS), Cells: cellNames(f.Cells), Why: f.Why,
-			Notes: append([]string{}, f.Notes...), LowConductivity: f.Run == rules.LowConductivity, WellMixed: f.Run == rules.WellMixed}
+			Notes: append([]string{}, f.Notes...), LowConductivity: kindOf(f.Run) == rules.LowConductivity, WellMixed: kindOf(f.Run) == rules.WellMixed}
 		if f.Place != nil {
 			one.AtMM = appendPlace(nil, *f.Place)
 		}
 		if l := f.Limit; l != nil {
 			one.Limit, one.Rule, one.Code, one.Clause, one.Edition = l.Name, ruleName(l), l.Code, l.Clause, l.Edition
+		}
+		out = append(out, one)
+	}
+	return out
+}
+
+// worstOfAll is how each limit fares between the ends of what varies.
+func worstOfAll(p *Product) []worstJSON {
+	out := make([]worstJSON, 0, len(p.Worst))
+	for i := range p.Worst {
+		w := &p.Worst[i]
+		f := &w.Nominal
+		one := worstJSON{Limit: w.Limit.Name, Ends: append([]string{}, w.Ends...), Verdict: f.Verdict.String(), Value: tenFigures(f.Value),
+			MarginK: fixedNumber(f.MarginK, 4), MarginS: fixedNumber(f.MarginS, 4), Drivers: []driverJSON{}}
+		if s := w.Share; s != nil {
+			one.Share = &shareJSON{s.Pieces, s.Met, fixedNumber(&s.Low, 6), fixedNumber(&s.High, 6), s.Seed}
+		}
+		for _, d := range w.Drivers {
+			dj := driverJSON{Quantity: d.Quantity, At: d.At.String(), Basis: d.Basis, Ends: []endJSON{}}
+			for _, e := range d.Ends {
+				dj.Ends = append(dj.Ends, endJSON{e.Words, e.Verdict.String(), fixedNumber(e.K, 4), fixedNumber(e.S, 4)})
+			}
+			one.Drivers = append(one.Drivers, dj)
 		}
 		out = append(out, one)
 	}

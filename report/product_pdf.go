@@ -32,6 +32,7 @@ func (d *doc) product(p *Product) {
 	x.operator()
 	x.front()
 	x.limits()
+	x.drivers()
 	x.predicted()
 	x.measured()
 	x.basis()
@@ -234,12 +235,15 @@ func (x *sheet) slowestSentence() string {
 	key := "chart sentence"
 	if name := x.p.nameOf(hist); name != "" {
 		key += " " + name
+		if _, ok := worstOf(name); ok {
+			key = "chart sentence worst"
+		}
 	}
 	if hist.Recorded {
 		key = "chart sentence record"
 	}
 	args := []any{x.decides.placeName, strings.Join(s, "; ")}
-	if key == "chart sentence" || key == "chart sentence "+rules.LowConductivity {
+	if key == "chart sentence" || key == "chart sentence "+rules.LowConductivity || key == "chart sentence worst" {
 		args = append([]any{x.decides.called()}, args...)
 	}
 	out := say(key, args...)
@@ -619,6 +623,9 @@ func (x *sheet) cardRows(f *rules.Finding) [][2]string {
 		{say("card asks"), say("card asks line", ruleName(l), h.asks(l), stages(l), whereAsked(l), f.Level) + x.cardCells(f)},
 		{say("card found"), found(value, f.Why)},
 		{say("card margin"), x.marginWords(f)},
+		{say("card ends"), x.endsWords(f)},
+		{say("card typed"), x.typedWords(f)},
+		{say("card share"), x.shareWords(f)},
 		{say("card place"), x.placeAndTime(f)},
 		{say("card clock"), x.clockWords(f)},
 		{say("card notes"), strings.Join(f.Notes, "; ")},
@@ -641,7 +648,7 @@ func (x *sheet) cardCells(f *rules.Finding) string {
 func (x *sheet) placeAndTime(f *rules.Finding) string {
 	where, when := f.PlaceName, ""
 	if f.Place != nil {
-		if lies := x.p.Product.Lies(*f.Place); where == "" {
+		if lies := x.p.productOf(x.p.runOf(f)).Lies(*f.Place); where == "" {
 			where = lies
 		} else if where != lies {
 			where = say("card where", where, lies)
@@ -980,6 +987,9 @@ func (x *sheet) profileSentence(times []float64) string {
 		out += say("profile joints")
 	}
 	if name := x.p.nameOf(hist); name != "" {
+		if _, ok := worstOf(name); ok {
+			return say("profile worst") + out
+		}
 		out = say("profile "+name) + out
 	}
 	return out

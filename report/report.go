@@ -101,6 +101,8 @@ type Product struct {
 	Further                                     []rules.Run   // further runs; none if none was due
 	Samples                                     model.Samples // every EveryS and at each change of step
 	Judgement                                   rules.Judgement
+	Worst                                       []WorstCase         // how each finding's limit fares between the ends of what varies; none if nothing varies
+	atWorst                                     []worstRun          // the runs of Worst
 	From                                        map[cell.Ref]string // where the cells of the findings come from, as that of Readings; nil if nothing is known
 	moved                                       string              // how the slowest place moves, once it was asked for
 	Lever                                       string              // the biggest lever in one sentence, for the page of the operator; "" if none was looked for
@@ -114,6 +116,11 @@ func (p *Product) run(name string) *model.History {
 	for _, r := range p.Further {
 		if r.Name == name {
 			return r.History
+		}
+	}
+	for i := range p.atWorst {
+		if p.atWorst[i].name == name {
+			return p.atWorst[i].history
 		}
 	}
 	return nil
@@ -134,6 +141,11 @@ func (p *Product) nameOf(h *model.History) string {
 			return r.Name
 		}
 	}
+	for i := range p.atWorst {
+		if p.atWorst[i].history == h {
+			return p.atWorst[i].name
+		}
+	}
 	return ""
 }
 
@@ -146,6 +158,9 @@ func (p *Product) runWords(name string, always bool) string {
 		return ""
 	case name == "":
 		return say("run usual")
+	}
+	if _, ok := worstOf(name); ok {
+		return say("run worst")
 	}
 	return say("run " + name)
 }

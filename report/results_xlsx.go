@@ -348,6 +348,7 @@ type Workbook struct {
 	rows                     []slim
 	names                    *names
 	findings, courses, input *grid
+	drivers                  *grid // nil until something varies
 }
 
 // NewWorkbook makes a writer of results.xlsx; nothing reaches w before Close.
@@ -427,12 +428,13 @@ func (b *Workbook) Add(p *Product) error {
 	}
 	b.rows = append(b.rows, slimOf(b.h, p, len(b.rows)+1))
 	b.addFindings(p)
+	b.addDrivers(p)
 	b.addCourse(p)
 	b.input.room(len(p.Readings))
 	for _, r := range p.Readings {
 		b.reading(p.Product.Name, &r)
 	}
-	return errors.Join(b.findings.err, b.courses.err, b.input.err, b.names.err)
+	return errors.Join(b.findings.err, b.driversErr(), b.courses.err, b.input.err, b.names.err)
 }
 
 // reading writes a row of the input.
@@ -508,17 +510,73 @@ func (b *Workbook) addFinding(p *Product, f *rules.Finding) {
 	g.maybe(f.ClockStartS, 1./60)
 	g.maybe(f.ClockEndS, 1./60)
 	run := ""
-	switch f.Run {
+	switch kindOf(f.Run) {
 	case rules.LowConductivity:
 		run = "0.9 of the conductivity"
 	case rules.WellMixed:
 		run = "as well mixed"
+	}
+	if _, ok := worstOf(f.Run); ok {
+		run = strings.TrimSuffix("at its unfavourable ends, "+run, ", ")
 	}
 	for _, s := range []string{f.Why, strings.Join(f.Notes, "; "), run, l.Code, l.Clause, l.Edition, l.IssuedBy, l.ConfirmedBy,
 		l.ConfirmedOn, l.Status, l.CCP, l.Hazard, strings.Join(cellNames(f.Cells), ", ")} {
 		g.text(s)
 	}
 	g.end()
+}
+
+func (b *Workbook) driversErr() error {
+	if b.drivers == nil {
+		return nil
+	}
+	return b.drivers.err
+}
+
+func driverColumns(h *Head) []gridColumn {
+	return []gridColumn{{"Product", 30, 0}, {"Limit", 28, 0}, {"Verdict", 14, 0}, {"Unfavourable ends", 50, 0}, {"Verdict as typed", 14, 0},
+		{"Margin as typed (" + h.unit() + " difference)", 14, 4}, {"Margin as typed (min)", 12, 4}, {"Rank", 8, 0}, {"Quantity", 28, 0}, {"End alone", 30, 0},
+		{"Verdict at that end", 14, 0}, {"Change of margin (" + h.unit() + " difference)", 14, 4}, {"Change of margin (min)", 12, 4}, {"Basis", 50, 0}, {"Row of the plan", 15, 0}}
+}
+
+// addDrivers writes a row for each end of what varies, for each limit; its cells stand in the order of driverColumns.
+func (b *Workbook) addDrivers(p *Product) {
+	if len(p.Worst) == 0 {
+		return
+	}
+	if b.drivers == nil {
+		b.drivers = newGrid("Worst case", driverColumns(b.h), b.h.Paper, b.names)
+	}
+	g := b.drivers
+	for i := range p.Worst {
+		w := &p.Worst[i]
+		verdict := w.Nominal.Verdict
+		for k := range p.Judgement.Findings {
+			if f := &p.Judgement.Findings[k]; f.Limit == w.Limit {
+				verdict = f.Verdict
+			}
+		}
+		for rank, d := range w.Drivers {
+			for _, e := range d.Ends {
+				g.room(1)
+				g.begin()
+				for _, s := range []string{p.Product.Name, w.Limit.Name, verdict.String(), strings.Join(w.Ends, ", "), w.Nominal.Verdict.String()} {
+					g.text(s)
+				}
+				g.maybe(w.Nominal.MarginK, b.h.perK())
+				g.maybe(w.Nominal.MarginS, 1./60)
+				g.number(float64(rank + 1))
+				g.text(d.Quantity)
+				g.text(e.Words)
+				g.text(e.Verdict.String())
+				g.maybe(e.K, b.h.perK())
+				g.maybe(e.S, 1./60)
+				g.text(d.Basis)
+				g.text(d.At.String())
+				g.end()
+			}
+		}
+	}
 }
 
 // unitWord is the unit of a finding as its numbers are shown.
@@ -689,6 +747,9 @@ func isoDate(h *Head) string {
 // Close writes the workbook and lets go of what was spooled. Call it once, after the last product, also after an error.
 func (b *Workbook) Close() (err error) {
 	grids := []*grid{b.overview(), b.findings, b.courses, b.input}
+	if b.drivers != nil {
+		grids = append(grids, b.drivers)
+	}
 	defer func() {
 		for _, g := range grids {
 			for _, p := range g.pages {

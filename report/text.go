@@ -10,6 +10,7 @@ import (
 
 	"slowpoint/model"
 	"slowpoint/model/cell"
+	"slowpoint/rules"
 )
 
 // Text writes report.txt: what the PDFs hold, as plain text that a screen reader reads in order. It stands in the words of
@@ -69,6 +70,10 @@ var textWords = map[string]string{
 	"properties ice": ", ice %s",
 	"limit low":      " (second run, at 0.9 of the conductivity)",
 	"limit mixed":    " (run as well mixed)",
+	"limit worst":    " (at its unfavourable ends)",
+	"drivers":        "What drives each margin",
+	"drivers of":     "%s",
+	"driver":         "%d. %s. %s. Basis: %s",
 	"course":         "Course of temperature",
 	"recorded":       "These temperatures were measured.",
 	"predicted":      "These temperatures were calculated, not measured.",
@@ -158,6 +163,7 @@ func (t *Text) Add(p *Product) error {
 	}
 	t.what(x)
 	t.limits(x)
+	t.drivers(x)
 	t.course(x)
 	t.basis(x)
 	t.cautions(x)
@@ -195,7 +201,7 @@ func (t *Text) limits(x *sheet) {
 		n++
 		run := ""
 		if f.Run != "" {
-			run = textWords["limit "+f.Run]
+			run = limitRun(f.Run)
 		}
 		t.heading(3, "limit", n, f.Limit.Name+run, f.Verdict)
 		for _, r := range x.cardRows(f) {
@@ -213,6 +219,33 @@ func (t *Text) limits(x *sheet) {
 			s += fmt.Sprintf(textWords["group by"], g.DecidedBy)
 		}
 		t.plain(s)
+	}
+}
+
+// limitRun is what follows a name where it is about a further run.
+func limitRun(name string) string {
+	if _, ok := worstOf(name); ok {
+		name = "worst"
+	}
+	return textWords["limit "+name]
+}
+
+// drivers writes what drives each margin.
+func (t *Text) drivers(x *sheet) {
+	if len(x.p.Worst) == 0 {
+		return
+	}
+	t.heading(2, "drivers")
+	t.plain(say("drivers sentence"))
+	for _, f := range x.order {
+		w := x.p.worstCase(f)
+		if w == nil || f.Limit == nil || f.Verdict == rules.NotApplicable {
+			continue
+		}
+		t.heading(3, "drivers of", f.Limit.Name)
+		for i, r := range x.driverRows(w) {
+			t.item(fmt.Sprintf(textWords["driver"], i+1, r[0], r[1], r[2]))
+		}
 	}
 }
 
@@ -246,7 +279,7 @@ func (t *Text) course(x *sheet) {
 			}
 			c, where := w.At(x.decides.place, sp.EndS), x.decides.placeName
 			if name := p.nameOf(w); name != "" { // another run has its own numbers
-				out = append(out, fmt.Sprintf(textWords["deciding"], where+textWords["limit "+name], h.temperature(c, r)))
+				out = append(out, fmt.Sprintf(textWords["deciding"], where+limitRun(name), h.temperature(c, r)))
 			} else {
 				out = append(out, fmt.Sprintf(textWords["deciding"], where, told.temperature(where, c, r)))
 			}

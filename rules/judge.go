@@ -11,7 +11,20 @@ func same(a, b string) bool { return strings.EqualFold(strings.TrimSpace(a), str
 
 // Judge holds a subject against the limits that apply to it, in the order given.
 func Judge(limits []Limit, groups []Group, s Subject) Judgement {
-	var j Judgement
+	return Conclude(Find(limits, s), groups)
+}
+
+// Conclude joins findings, one for each limit in its order, into a judgement.
+func Conclude(findings []Finding, groups []Group) Judgement {
+	j := Judgement{Findings: findings}
+	j.join(groups)
+	j.conclude()
+	return j
+}
+
+// Find judges each limit that applies to a subject, in the order given, before groups join them.
+func Find(limits []Limit, s Subject) []Finding {
+	var out []Finding
 	usual := newCourses(s.History)
 	further := make([]*courses, len(s.Further))
 	for i := range s.Further {
@@ -33,11 +46,21 @@ func Judge(limits []Limit, groups []Group, s Subject) Judgement {
 				f.carriedOver(g.CarryOver)
 			}
 		}
-		j.Findings = append(j.Findings, f)
+		out = append(out, f)
 	}
-	j.join(groups)
-	j.conclude()
-	return j
+	return out
+}
+
+// Worse tells whether a finding is less favourable than another of the same limit: by verdict, then by room in time, then in temperature.
+// No difference is too small for it. One that does not apply is the most favourable.
+func Worse(a, b *Finding) bool {
+	if a.Verdict != b.Verdict {
+		return rank(a.Verdict) > rank(b.Verdict)
+	}
+	if a.MarginS != nil && b.MarginS != nil && *a.MarginS != *b.MarginS {
+		return *a.MarginS < *b.MarginS
+	}
+	return a.MarginK != nil && b.MarginK != nil && *a.MarginK < *b.MarginK
 }
 
 // to tells whether a limit is for a subject.

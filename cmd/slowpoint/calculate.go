@@ -14,7 +14,39 @@ import (
 // by about 15 %, and values below the calculated ones by 3 to 10 % are common (ASHRAE and other published diffusivities).
 const lowConductivity = 0.9
 
-// judged predicts and judges one product.
+// prediction is a product with its runs.
+type prediction struct {
+	product *workbook.Product
+	history *model.History
+	further []rules.Run
+}
+
+// predict makes every run of a product that is due.
+func (r *runner) predict(p *workbook.Product, o model.Options) (*prediction, error) {
+	h, err := model.Solve(p.Product, p.Steps, o)
+	if err != nil {
+		return nil, err
+	}
+	runs, err := further(p, h, o)
+	return &prediction{p, h, runs}, err
+}
+
+// runOf is a run by its name; "" for the usual one.
+func (d *prediction) runOf(name string) *model.History {
+	for _, r := range d.further {
+		if r.Name == name {
+			return r.History
+		}
+	}
+	return d.history
+}
+
+// find judges limits, before groups join them.
+func (d *prediction) find(limits []rules.Limit) []rules.Finding {
+	return rules.Find(limits, rules.Subject{Product: d.product.Name, Family: d.product.Family, History: d.history, Further: d.further})
+}
+
+// judged predicts and judges one product, at the unfavourable ends of what varies.
 func (r *runner) judged(p *workbook.Product) (*report.Product, error) {
 	return r.judgedBy(p, model.Options{})
 }
@@ -28,7 +60,7 @@ func (r *runner) judgedBy(p *workbook.Product, o model.Options) (*report.Product
 	out := &report.Product{Product: p.Product, Steps: p.Steps, Family: p.Family, RecipeVersion: p.RecipeVersion, Batch: p.Batch,
 		Process: p.Process, Note: p.Note, History: h}
 	subject := rules.Subject{Product: p.Name, Family: p.Family, History: h}
-	if o.Rough { // further runs make no finding better
+	if o.Rough { // further runs and the ends of what varies make no finding better
 		if out.Judgement = rules.Judge(r.plan.Limits, r.plan.Groups, subject); out.Judgement.Verdict == rules.NotMet {
 			return out, nil
 		}
@@ -37,7 +69,11 @@ func (r *runner) judgedBy(p *workbook.Product, o model.Options) (*report.Product
 		return nil, err
 	}
 	subject.Further = out.Further
-	out.Judgement = rules.Judge(r.plan.Limits, r.plan.Groups, subject)
+	findings := rules.Find(r.plan.Limits, subject)
+	if len(p.Spreads) > 0 {
+		return out, r.worst(p, out, findings, o)
+	}
+	out.Judgement = rules.Conclude(findings, r.plan.Groups)
 	return out, nil
 }
 

@@ -29,6 +29,8 @@ type checkOptions struct {
 	out, every, date, paper string
 	only                    []string
 	onePDF, noPDF           bool
+	samples                 int
+	seed                    uint64
 }
 
 func checkCommand(files *shelf) *cobra.Command {
@@ -46,6 +48,8 @@ func checkCommand(files *shelf) *cobra.Command {
 	f.StringVar(&o.paper, "paper", "", "`SIZE` of the pages: A4 or Letter (default: the plan's own, else A4)")
 	f.BoolVar(&o.onePDF, "one-pdf", false, "one PDF with everything instead of one a product")
 	f.BoolVar(&o.noPDF, "no-pdf", false, "write no PDF")
+	f.IntVar(&o.samples, "samples", 0, "with a sheet Spread: judge `N` drawn pieces, 200 say, and tell the share that meets each limit (0 = none)")
+	f.Uint64Var(&o.seed, "seed", 1, "`SEED` of the drawn pieces; the same seed draws the same")
 	return cmd
 }
 
@@ -172,6 +176,9 @@ func headOf(plan *workbook.Plan, o *checkOptions) (*report.Head, error) {
 	if h.Paper == "" {
 		h.Paper = "A4"
 	}
+	if o.samples < 0 || o.samples > mostSamples {
+		return nil, &failure{exitInput, fmt.Errorf("--samples %d: expected a number from 0 to %d", o.samples, mostSamples)}
+	}
 	if o.onePDF && o.noPDF {
 		return nil, &failure{exitInput, errors.New("--one-pdf and --no-pdf exclude each other: leave one out")}
 	}
@@ -291,8 +298,12 @@ type runner struct {
 	advice   []string               // by row: the advice that is not met, a line each
 	names    map[string]string      // by product: the file name of its report, without its ending
 	refused  []report.NotCalculated // found while calculating
+	corners  map[cell.Ref]corner    // by row of Limits: where to judge what varies, once it was found; nil: it is looked for
 	warned   cell.Errors            // as well, of products that were calculated
 }
+
+// mostSamples is how many pieces are drawn at most.
+const mostSamples = 100_000
 
 // ahead is how many products a processor may be ahead of the one that is written.
 const ahead = 4

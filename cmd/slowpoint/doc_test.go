@@ -512,6 +512,17 @@ func TestReadmeResults(t *testing.T) {
 	}
 	have := map[string]bool{}
 	keys(all, "", have)
+	if run([]string{"check", "--no-pdf", "--samples", "5", "--out", dir, spreadPlan(t)}, nil, &bytes.Buffer{}, os.Stderr) != exitNotMet {
+		t.Error("the plan with a spread is not judged")
+	}
+	if b, err = os.ReadFile(filepath.Join(dir, "results.json")); err != nil {
+		t.Fatal(err)
+	}
+	all = nil
+	if err := json.Unmarshal(b, &all); err != nil {
+		t.Fatal(err)
+	}
+	keys(all, "", have)
 	for k := range have {
 		if !told[k] {
 			t.Errorf("README.md does not explain %s of results.json", k)

@@ -23,6 +23,7 @@ func (r *runner) lever(p *workbook.Product, now *report.Product) string {
 	if now.Judgement.Verdict != rules.NotMet || len(r.plan.Products) > leverPlans {
 		return ""
 	}
+	r = r.atCorners(now)
 	found := r.tryAll(p, now)
 	fixed := found.fixed(now)
 	if len(fixed) > 0 { // look again, at the others
@@ -82,7 +83,7 @@ func (r *runner) without(fixed []*rules.Finding) *runner {
 			plan.Limits = append(plan.Limits, *l)
 		}
 	}
-	return &runner{plan: &plan, head: r.head, options: r.options}
+	return &runner{plan: &plan, head: r.head, options: r.options, corners: r.corners}
 }
 
 // moves notes the limits of which a change says anything else than before.

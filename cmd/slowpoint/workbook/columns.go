@@ -331,11 +331,11 @@ var Sheets = []*Sheet{
 		{Heading: "Across", Quantity: &unit.Length, Unit: "mm", Help: "along the width or, with an axis, along the radius; blank = 0"},
 		{Heading: "Along", Quantity: &unit.Length, Unit: "mm", Help: "along the length; blank = 0"},
 	}},
-	{Name: "Spread", Help: "Least and most of what varies, for the worst case", Refused: "worst cases by Spread cannot be calculated yet", Columns: []*Column{
-		{Heading: "Applies to", Needed: true, Help: "all, a family, product, process or process/step"},
-		{Heading: "Quantity", Needed: true, Choices: []string{"thickness", "width", "length", "diameter", "start temperature", "medium temperature", "film coefficient", "air speed", "conductivity", "specific heat", "density", "duration", "probe"}},
-		{Heading: "Minus", Free: true},
-		{Heading: "Plus", Free: true},
+	{Name: "Spread", Help: "Least and most of what varies, for the worst case", Columns: []*Column{
+		{Heading: "Applies to", Needed: true, Help: "all, family: NAME, a product, a process, or process/step as Cook-chill/Oven; of rows for one quantity the most specific counts"},
+		{Heading: "Quantity", Needed: true, Choices: spreadNames, Help: "what varies; of a process, its steps vary apart from one another"},
+		{Heading: "Minus", Help: "how far below it may be, with its unit in the cell: 2 mm, 5 %, 3 °C; 0 or blank = not at all"},
+		{Heading: "Plus", Help: "how far above it may be, with its unit in the cell: 2 mm, 5 %, 3 °C; 0 or blank = not at all"},
 		{Heading: "Basis", Needed: true, Help: "where the figure comes from"},
 	}},
 	{Name: "Records", Help: "Probe and air logs", Refused: "records cannot be read yet", Columns: []*Column{

@@ -152,6 +152,26 @@ var (
 	pointTwice     = saying{"is there twice for this product; the first is in row {1}", "give each point of a product a name of its own"}
 	pointStirred   = saying{"is a point, but a stirred product has the same temperature everywhere", "take the row out"}
 
+	// what varies
+	spreadUnknown   = saying{"matches no product, family or process{1}", "type all, family: NAME, a product, a process, or process/step as Cook-chill/Oven"}
+	spreadTwoNames  = saying{"is the name of a product and of a family or process too; the product is taken", "write family: NAME for a family"}
+	spreadNothing   = saying{"Neither Minus nor Plus says how far the {1} varies", "type how far it may be below or above, such as {2}, or take the row out"}
+	spreadBare      = saying{"has no unit", "type how far the {2} may be off, with a unit in the cell, such as {1}"}
+	spreadPercent   = saying{"is a percentage, and one of a {1} would depend on its scale", "type how far it may be off, such as {2}"}
+	spreadNegative  = saying{"is less than 0", "{1} says how far it may be off, without a sign"}
+	spreadToNothing = saying{"would leave nothing of the {1}", "type less than 100 %"}
+	spreadTooMuch   = saying{"is more than {1} %", "check the number"}
+	spreadOfProduct = saying{"names a step, and the {1} is no quantity of a step", "name the process, the product or its family"}
+	spreadLacking   = saying{"is a quantity that {1} does not have", "correct the quantity, or whom the row is for"}
+	spreadTwice     = saying{"varies by row {1} too, which is for as many", "keep one of the rows"}
+	spreadOver      = saying{"is left to row {1} for {2}, which is more specific", ""}
+	spreadWins      = saying{"takes the place of row {1} for {2}, as it is more specific", ""}
+	spreadMany      = saying{"is the row by which {1} quantities of {2} vary; at most {3} are calculated", "keep those that matter, or say of which process/step they are"}
+	spreadTooFar    = saying{"would leave nothing of the {1} of {2}", "type less"}
+	spreadFilm      = saying{"is no percentage, and the program works out the film coefficient of {1}", "type a percentage, such as 25 %"}
+	spreadCourse    = saying{"makes {1} longer than its course", "add rows to the course up to the end of the longest step"}
+	spreadEnd       = saying{"leads, for {1}, to what cannot be calculated ({2}): {3}", "type less, or change what it is about"}
+
 	// limits
 	limitNeeds     = saying{"{1} is missing: the rule {2} needs it", "fill it"}
 	limitUnused    = saying{"is given, but the rule {1} does not use {2}", "clear the cell or choose another rule"}

@@ -21,6 +21,7 @@ type Product struct {
 	model.Product
 	Steps                                       []model.Step // shared by the products of a process; do not change it
 	Family, RecipeVersion, Batch, Process, Note string
+	Spreads                                     []Spread   // what varies, by the sheet Spread; none: no worst case is asked for
 	readings                                    [][]echoes // each part is shared by all products that use it
 	origins                                     *origins   // the plan's
 }

@@ -215,7 +215,7 @@ func (r *reader) read() {
 	r.readCourses()
 	r.readProducts()
 	for _, p := range r.products { // what such a sheet would say of a product nobody knows
-		for _, name := range []string{"Plan", "Foods", "Steps", "Faces"} {
+		for _, name := range []string{"Plan", "Foods", "Steps", "Faces", "Spread"} {
 			p.suffer(r.unread[name])
 		}
 	}
@@ -226,6 +226,7 @@ func (r *reader) read() {
 	r.readPoints()
 	r.notYet()
 	r.chains()
+	r.readSpread()
 	r.readLimits()
 	r.finish()
 }
@@ -455,11 +456,6 @@ func (r *reader) notYet() {
 		for i, l := range t.lines {
 			var concerned []*product
 			switch s.Name {
-			case "Spread":
-				concerned = r.products
-				if i < 200 {
-					concerned = r.matching(l.Words("Applies to"), "")
-				}
 			case "Records":
 				concerned = r.products
 				if i < 200 {

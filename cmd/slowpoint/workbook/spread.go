@@ -1,0 +1,581 @@
+package workbook
+
+import (
+	"math"
+	"slices"
+	"strconv"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/model/unit"
+)
+
+// Spread is one thing that varies about a product, or about one of its steps, between two ends.
+type Spread struct {
+	At          cell.Ref // its row
+	Of          *Varies
+	Step        int // which step of the product; -1: the product itself
+	StepName    string
+	Minus, Plus Deviation
+	Basis       string
+	rank        int // how specific its row is
+}
+
+// Deviation is how far below or above its typed value a quantity may be.
+type Deviation struct {
+	Typed string  // "2 mm", "5 %"; "" for none
+	By    float64 // in the unit that the program computes in, or a share of the value; never negative
+	Share bool
+}
+
+// of is the deviation from a value, in its own unit.
+func (d Deviation) of(v float64) float64 {
+	if d.Share {
+		return v * d.By
+	}
+	return d.By
+}
+
+// Varies is a quantity of the sheet Spread.
+type Varies struct {
+	Name       string
+	quantity   *unit.Quantity // of a deviation that is no percentage
+	example    string
+	percent    bool   // a percentage of it means something
+	ofStep     bool   // a step has it, not the product
+	less, more string // "thinner", "thicker": words of its ends
+	positive   bool   // it must stay above 0
+	has        func(p *model.Product, s *model.Step) bool
+	value      func(p *model.Product, s *model.Step) float64                     // least value that must stay positive
+	move       func(p *model.Product, s *model.Step, by func(v float64) float64) // by gives the new value of an old one
+}
+
+// degrees of a deviation: °C and K are one, and °F scales without a shift.
+var spreadDegrees = unit.Quantity{Name: "temperature difference", Units: []unit.Unit{
+	{Names: append([]string{"°C"}, append(unit.Difference.Units[0].Names, unit.Temperature.Units[0].Names...)...)},
+	{Names: append([]string{"°F"}, append(unit.Difference.Units[1].Names, unit.Temperature.Units[1].Names...)...), Per: 1.8}}}
+
+// size makes the entry of a size.
+func sizeVaries(name, less, more string) *Varies {
+	column := strings.ToUpper(name[:1]) + name[1:]
+	return &Varies{Name: name, quantity: &unit.Length, example: "2 mm", percent: true, less: less, more: more, positive: true,
+		has: func(p *model.Product, _ *model.Step) bool {
+			return p.Shape != nil && (slices.Contains(p.Shape.Needs, column) || p.Shape == model.LayeredSlab && name == "thickness")
+		},
+		value: func(p *model.Product, _ *model.Step) float64 { return *p.Size.Of(column) },
+		move: func(p *model.Product, _ *model.Step, by func(float64) float64) {
+			was := *p.Size.Of(column)
+			*p.Size.Of(column) = by(was)
+			for i := range p.Layers { // each in proportion
+				p.Layers[i].ThicknessM *= by(was) / was
+			}
+		}}
+}
+
+// property makes the entry of a property of the food. The mass of ice and the heat that it takes belong to a kg and stay; of specific heat
+// the sensible part varies, and with it the heat content by the same factor.
+func propertyVaries(name string, q *unit.Quantity, example string, of func(*model.Properties) *float64) *Varies {
+	return &Varies{Name: name, quantity: q, example: example, percent: true, less: "lower", more: "higher", positive: true,
+		has: func(p *model.Product, _ *model.Step) bool { return len(p.Foods()) > 0 },
+		value: func(p *model.Product, _ *model.Step) float64 {
+			least := math.Inf(1)
+			for _, m := range p.Foods() {
+				q := m.Props(p.StartC)
+				least = min(least, *of(&q))
+			}
+			return least
+		},
+		move: func(p *model.Product, _ *model.Step, by func(float64) float64) {
+			made := map[*model.Material]*model.Material{}
+			other := func(m *model.Material) *model.Material {
+				if m == nil {
+					return nil
+				}
+				if made[m] == nil {
+					n := *m
+					n.Props = func(c float64) model.Properties {
+						q := m.Props(c)
+						*of(&q) = by(*of(&q))
+						return q
+					}
+					if name == "specific heat" && m.EnthalpyJkg != nil {
+						base := m.EnthalpyJkg(m.HighC)
+						q := m.Props(m.HighC)
+						factor := by(q.CJkgK) / q.CJkgK
+						n.EnthalpyJkg = func(c float64) float64 { return base + factor*(m.EnthalpyJkg(c)-base) }
+					}
+					made[m] = &n
+				}
+				return made[m]
+			}
+			p.Food = other(p.Food)
+			for i := range p.Layers {
+				p.Layers[i].Food = other(p.Layers[i].Food)
+			}
+		}}
+}
+
+// exposures are those of a step, over the whole surface and on faces of their own.
+func exposures(s *model.Step) []*model.Exposure {
+	out := []*model.Exposure{&s.Exposure}
+	for i := range s.Faces {
+		out = append(out, &s.Faces[i].Exposure)
+	}
+	return out
+}
+
+// anyExposure tells whether one of a step's exposures is so.
+func anyExposure(s *model.Step, is func(*model.Exposure) bool) bool {
+	return slices.ContainsFunc(exposures(s), is)
+}
+
+func leastOf(s *model.Step, of func(*model.Exposure) *float64) float64 {
+	least := math.Inf(1)
+	for _, e := range exposures(s) {
+		if v := of(e); v != nil {
+			least = min(least, *v)
+		}
+	}
+	return least
+}
+
+// worksOut tells whether the program works the film of an exposure out, as one number or by the surface temperature.
+func worksOut(e *model.Exposure) bool {
+	return e.FilmW == nil && e.Surface != nil && !e.Surface.NoMedium && e.Surface != model.Held && e.Surface != model.ContactPlate && e.Surface != model.Film
+}
+
+// Spreads are the quantities that may vary, in the order of the sheet's list.
+var Spreads = []*Varies{
+	sizeVaries("thickness", "thinner", "thicker"),
+	sizeVaries("width", "narrower", "wider"),
+	sizeVaries("length", "shorter", "longer"),
+	sizeVaries("diameter", "less in diameter", "more in diameter"),
+	{Name: "start temperature", quantity: &spreadDegrees, example: "2 °C", less: "colder at the start", more: "warmer at the start",
+		has:  func(*model.Product, *model.Step) bool { return true },
+		move: func(p *model.Product, _ *model.Step, by func(float64) float64) { p.StartC = by(p.StartC) }},
+	{Name: "medium temperature", quantity: &spreadDegrees, example: "3 °C", ofStep: true, less: "colder", more: "warmer",
+		has: func(_ *model.Product, s *model.Step) bool {
+			return anyExposure(s, func(e *model.Exposure) bool { return len(e.Medium.C) > 0 })
+		},
+		move: func(_ *model.Product, s *model.Step, by func(float64) float64) {
+			for _, e := range exposures(s) {
+				e.Medium.C = slices.Clone(e.Medium.C)
+				for i := range e.Medium.C {
+					e.Medium.C[i] = by(e.Medium.C[i])
+				}
+			}
+		}},
+	{Name: "film coefficient", quantity: &unit.Film, example: "25 %", percent: true, ofStep: true, less: "less film coefficient", more: "more film coefficient", positive: true,
+		has: func(_ *model.Product, s *model.Step) bool {
+			return anyExposure(s, func(e *model.Exposure) bool { return e.FilmW != nil || worksOut(e) })
+		},
+		value: func(_ *model.Product, s *model.Step) float64 {
+			return leastOf(s, func(e *model.Exposure) *float64 { return e.FilmW })
+		},
+		move: func(_ *model.Product, s *model.Step, by func(float64) float64) {
+			for _, e := range exposures(s) {
+				switch {
+				case e.FilmW != nil:
+					v := by(*e.FilmW)
+					e.FilmW = &v
+				case worksOut(e):
+					e.FilmFactor = by(1)
+				}
+			}
+		}},
+	{Name: "air speed", quantity: &unit.Speed, example: "20 %", percent: true, ofStep: true, less: "slower air", more: "faster air", positive: true,
+		has: func(_ *model.Product, s *model.Step) bool {
+			return anyExposure(s, func(e *model.Exposure) bool { return e.AirMS != nil && e.FilmW == nil })
+		},
+		value: func(_ *model.Product, s *model.Step) float64 {
+			return leastOf(s, func(e *model.Exposure) *float64 { return e.AirMS })
+		},
+		move: func(_ *model.Product, s *model.Step, by func(float64) float64) {
+			for _, e := range exposures(s) {
+				if e.AirMS != nil {
+					v := by(*e.AirMS)
+					e.AirMS = &v
+				}
+			}
+		}},
+	propertyVaries("conductivity", &unit.Conductivity, "5 %", func(q *model.Properties) *float64 { return &q.KWmK }),
+	propertyVaries("specific heat", &unit.SpecificHeat, "3 %", func(q *model.Properties) *float64 { return &q.CJkgK }),
+	propertyVaries("density", &unit.Density, "3 %", func(q *model.Properties) *float64 { return &q.RhoKgM3 }),
+	{Name: "duration", quantity: &unit.Duration, example: "5 min", percent: true, ofStep: true, less: "shorter", more: "longer", positive: true,
+		has:   func(_ *model.Product, s *model.Step) bool { return true },
+		value: func(_ *model.Product, s *model.Step) float64 { return s.DurationS },
+		move:  func(_ *model.Product, s *model.Step, by func(float64) float64) { s.DurationS = by(s.DurationS) }},
+	{Name: "probe", quantity: &unit.Length, example: "3 mm", less: "lower or further in", more: "higher or further out",
+		has: func(p *model.Product, _ *model.Step) bool { return len(p.Points) > 0 },
+		move: func(p *model.Product, _ *model.Step, by func(float64) float64) {
+			p.Points = slices.Clone(p.Points)
+			for i := range p.Points {
+				p.Points[i].UpM = by(p.Points[i].UpM)
+			}
+		}},
+}
+
+// Varied is the product with each of its spreads at a place between its ends: −1 is Minus, 0 as typed, 1 Plus. at is as long as Spreads;
+// the plan's own product stays as it is.
+func (p *Product) Varied(at []float64) Product {
+	q := *p
+	q.Steps = slices.Clone(p.Steps)
+	q.Layers = slices.Clone(p.Layers)
+	for i := range q.Steps {
+		q.Steps[i].Faces = slices.Clone(q.Steps[i].Faces)
+	}
+	for i := range p.Spreads {
+		s := &p.Spreads[i]
+		if at[i] == 0 {
+			continue
+		}
+		d := s.Plus
+		if at[i] < 0 {
+			d = s.Minus
+		}
+		var step *model.Step
+		if s.Step >= 0 {
+			step = &q.Steps[s.Step]
+		}
+		s.Of.move(&q.Product, step, func(v float64) float64 { return v + at[i]*d.of(v) })
+	}
+	return q
+}
+
+// Span is how far a spread reaches below and above the typed value, both in one unit.
+func (p *Product) Span(i int) (minus, plus float64) {
+	s := &p.Spreads[i]
+	if s.Minus.Share == s.Plus.Share || s.Of.value == nil {
+		return s.Minus.By, s.Plus.By
+	}
+	var step *model.Step
+	if s.Step >= 0 {
+		step = &p.Steps[s.Step]
+	}
+	v := s.Of.value(&p.Product, step)
+	return s.Minus.of(v), s.Plus.of(v)
+}
+
+// Named is the quantity in words, with its step: "medium temperature of Chill".
+func (s *Spread) Named() string {
+	if s.StepName == "" {
+		return s.Of.Name
+	}
+	return s.Of.Name + " of " + s.StepName
+}
+
+// End words an end: "2 mm thicker", "Chill 3 °C warmer". at: below 0 Minus, above 0 Plus.
+func (s *Spread) End(at int) string {
+	d, word := s.Plus, s.Of.more
+	if at < 0 {
+		d, word = s.Minus, s.Of.less
+	}
+	switch words := d.Typed + " " + word; {
+	case s.StepName != "":
+		return s.StepName + " " + words
+	case s.Of.ofSize():
+		return words
+	case s.Of.positive || s.Of.Name == "probe":
+		return s.Of.Name + " " + words
+	default:
+		return words
+	}
+}
+
+// ofSize tells whether it is a size, whose words name it by themselves.
+func (v *Varies) ofSize() bool {
+	return v.quantity == &unit.Length && v.Name != "probe"
+}
+
+// The words of the column, and how many quantities of a product may vary, and how far up.
+var spreadNames = names(Spreads, func(v *Varies) string { return v.Name })
+
+const (
+	mostSpreads    = 40
+	mostSpreadPlus = 5.0 // of the value: a film may be five times what is taken
+)
+
+// scope is whom a row of Spread is for.
+type spreadScope struct {
+	products []*product
+	step     string // key of the step; "" for all
+	rank     int    // 0 all, 1 family, 2 process, 3 product, 4 process/step
+}
+
+// readSpread reads the sheet Spread and gives each product what varies about it; of rows for the same quantity the most specific counts.
+func (r *reader) readSpread() {
+	t := r.tables["Spread"]
+	if t == nil {
+		return
+	}
+	for _, l := range t.lines {
+		scope := r.spreadScope(l)
+		s := Spread{At: l.Ref(), Step: -1, rank: scope.rank}
+		if w := l.Choice("Quantity"); w != "" {
+			s.Of = Spreads[slices.Index(spreadNames, w)]
+		}
+		s.Basis = l.Words("Basis")
+		if s.Of != nil {
+			s.Minus, s.Plus = l.deviation("Minus", s.Of), l.deviation("Plus", s.Of)
+			switch {
+			case !l.Filled("Minus") && !l.Filled("Plus"):
+				l.Fault("Minus", "", spreadNothing, s.Of.Name, s.Of.example)
+			case s.Minus.By == 0 && s.Plus.By == 0 && l.Sound():
+				l.Fault("Minus", "", spreadNothing, s.Of.Name, s.Of.example)
+			}
+			if s.Of.positive && s.Minus.Share && s.Minus.By >= 1 {
+				l.Fault("Minus", s.Minus.Typed, spreadToNothing, s.Of.Name)
+			}
+			if s.Plus.Share && s.Plus.By > mostSpreadPlus {
+				l.Fault("Plus", s.Plus.Typed, spreadTooMuch, short(mostSpreadPlus*100))
+			}
+			if scope.step != "" && !s.Of.ofStep {
+				l.Fault("Applies to", l.Entry("Applies to").Text, spreadOfProduct, s.Of.Name)
+			}
+		}
+		had := false
+		for _, p := range scope.products {
+			if l.Sound() && p.Shape != nil {
+				had = r.hangSpread(l, p, s, scope.step) || had
+				p.readings = append(p.readings, l.readings)
+			}
+		}
+		if l.Sound() && !had && len(scope.products) > 0 && slices.ContainsFunc(scope.products, func(p *product) bool { return p.Shape != nil && len(p.Steps) > 0 }) {
+			l.Fault("Quantity", s.Of.Name, spreadLacking, r.whoLacks(scope))
+		}
+		for _, p := range scope.products {
+			p.suffer(l.because)
+		}
+	}
+	for _, p := range r.products {
+		r.checkSpreads(t, p)
+	}
+}
+
+// whoLacks names what a quantity is missing in.
+func (r *reader) whoLacks(s spreadScope) string {
+	switch {
+	case s.step != "":
+		return "that step"
+	case len(s.products) == 1 && s.products[0].Shape != nil:
+		return s.products[0].Name + ", a product of the shape " + s.products[0].Shape.Name + ","
+	}
+	return "any of the products that the row is for"
+}
+
+// spreadScope finds whom a row is for. Where nobody knows, every product suffers: a spread that is left out would be taken for met.
+func (r *reader) spreadScope(l *Line) spreadScope {
+	typed := l.Words("Applies to")
+	if typed == "" {
+		return spreadScope{products: r.products}
+	}
+	head, family, named := strings.Cut(typed, ":")
+	process, step, both := strings.Cut(typed, "/")
+	switch {
+	case Key(typed) == "all":
+		return spreadScope{products: r.products}
+	case named && Key(head) == "family" && len(r.families[Key(family)]) > 0 && Key(family) != "":
+		return spreadScope{products: r.families[Key(family)], rank: 1}
+	case r.byName[Key(typed)] != nil:
+		if r.processes[Key(typed)] != nil || len(r.families[Key(typed)]) > 0 {
+			l.Remark(cell.Note, "Applies to", typed, spreadTwoNames)
+		}
+		return spreadScope{products: []*product{r.byName[Key(typed)]}, rank: 3}
+	case r.processes[Key(typed)] != nil:
+		return spreadScope{products: r.users[Key(typed)], rank: 2}
+	case len(r.families[Key(typed)]) > 0:
+		return spreadScope{products: r.families[Key(typed)], rank: 1}
+	case both && r.processes[Key(process)] != nil:
+		pr := r.processes[Key(process)]
+		if pr.by[Key(step)] == nil {
+			l.Fault("Applies to", typed, stepUnknown, pr.name, r.offer(step, pr.stepNames))
+		}
+		return spreadScope{products: r.users[Key(process)], step: Key(step), rank: 4}
+	}
+	if !r.blind() {
+		near := r.offer(typed, func() []string {
+			list := append([]string{"all"}, r.productNames()...)
+			for _, p := range r.products {
+				if p.Family != "" && !slices.Contains(list, "family: "+p.Family) && len(list) < 2*len(r.products)+1 {
+					list = append(list, "family: "+p.Family)
+				}
+			}
+			return append(list, r.processNames()...)
+		})
+		l.Fault("Applies to", typed, spreadUnknown, near)
+	}
+	return spreadScope{products: r.products}
+}
+
+// deviation reads a cell of Minus or Plus, which brings its own unit.
+func (l *Line) deviation(heading string, v *Varies) Deviation {
+	e := l.Entry(heading)
+	var d Deviation
+	if e.Kind == Blank {
+		l.note(heading, "", "0", "blank: it does not vary this way")
+		return d
+	}
+	if l.broken(heading, e) {
+		return d
+	}
+	text := l.t.grid.Shown(e)
+	var value unit.Value
+	var wrong *unit.Mistake
+	share := strings.ContainsAny(text, "%％")
+	q := v.quantity
+	if share {
+		q = &unit.Percent
+	}
+	switch {
+	case e.Kind == Truth:
+		l.Fault(heading, text, isTruth, v.example)
+		return d
+	case e.Kind == Figure && (e.Form == Date || e.Form == Clock && v.quantity != &unit.Duration):
+		l.Fault(heading, text, spreadBare, v.example, v.Name)
+		return d
+	case e.Kind == Figure && e.Shows != AsStored:
+		l.refuse(heading, e.differs(text))
+		return d
+	case e.Kind == Figure && e.Form == Clock:
+		x, err := storedNumber(e.Text)
+		if err != nil {
+			l.Fault(heading, text, spreadBare, v.example, v.Name)
+			return d
+		}
+		value = unit.Value{Computed: math.Round(x*86400*1000) / 1000, Typed: text}
+	default:
+		dec := l.r.decimal
+		if e.Kind == Figure { // as it is stored, with a point
+			dec = unit.Point
+		}
+		value, wrong = q.Parse(text, nil, dec)
+	}
+	switch {
+	case wrong != nil && strings.HasPrefix(wrong.Says, unit.NoUnit):
+		if x, err := strconv.ParseFloat(strings.TrimSpace(text), 64); err == nil && x == 0 { // nothing needs no unit
+			value, wrong = unit.Value{Typed: "0"}, nil
+			break
+		}
+		l.Fault(heading, text, spreadBare, v.example, v.Name)
+		return d
+	case wrong != nil:
+		l.Fault(heading, text, asFound, wrong.Says, wrong.Mend)
+		return d
+	}
+	switch {
+	case share && !v.percent:
+		l.Fault(heading, value.Typed, spreadPercent, v.Name, v.example)
+	case value.Computed < 0:
+		l.Fault(heading, value.Typed, spreadNegative, heading)
+	}
+	d = Deviation{Typed: value.Typed, By: value.Computed, Share: share}
+	used := short(value.Computed) + spaced(v.quantity.Units[0].Name())
+	if share {
+		d.By /= 100
+		used = short(value.Computed) + " %"
+	}
+	l.note(heading, value.Typed, used, "")
+	return d
+}
+
+// hangSpread gives a spread to a product, for each step that has it, and tells whether it has it at all.
+func (r *reader) hangSpread(l *Line, p *product, s Spread, stepKey string) (had bool) {
+	add := func(step int, name string) {
+		had = true
+		s.Step, s.StepName = step, name
+		for i := range p.Spreads {
+			o := &p.Spreads[i]
+			if o.Of != s.Of || o.Step != step {
+				continue
+			}
+			switch {
+			case o.rank == s.rank:
+				l.Fault("Quantity", s.Of.Name, spreadTwice, strconv.Itoa(o.At.Row))
+			case o.rank > s.rank:
+				l.Remark(cell.Note, "Quantity", s.Of.Name, spreadOver, strconv.Itoa(o.At.Row), p.Name)
+			default:
+				l.Remark(cell.Note, "Quantity", s.Of.Name, spreadWins, strconv.Itoa(o.At.Row), p.Name)
+				*o = s
+			}
+			return
+		}
+		p.Spreads = append(p.Spreads, s)
+	}
+	if !s.Of.ofStep {
+		if s.Of.has(&p.Product.Product, nil) {
+			add(-1, "")
+		}
+		return had
+	}
+	for i := range p.Steps {
+		if st := &p.Steps[i]; (stepKey == "" || Key(st.Name) == stepKey) && st.Surface != nil && s.Of.has(&p.Product.Product, st) {
+			add(i, st.Name)
+		}
+	}
+	return had
+}
+
+// checkSpreads asks the model what it cannot calculate at each end.
+func (r *reader) checkSpreads(t *table, p *product) {
+	if len(p.because) > 0 || len(p.Spreads) == 0 || p.Shape == nil || len(p.Steps) == 0 {
+		return
+	}
+	lineOf := func(s *Spread) *Line {
+		return t.lines[slices.IndexFunc(t.lines, func(l *Line) bool { return l.Ref() == s.At })]
+	}
+	if len(p.Spreads) > mostSpreads {
+		l := lineOf(&p.Spreads[mostSpreads])
+		l.Fault("Applies to", l.Entry("Applies to").Text, spreadMany, strconv.Itoa(len(p.Spreads)), p.Name, strconv.Itoa(mostSpreads))
+		p.suffer(l.because)
+		return
+	}
+	before := map[string]bool{}
+	for _, e := range model.Check(p.Product.Product, p.Steps) {
+		before[e.Msg] = true
+	}
+	for i := range p.Spreads {
+		s := &p.Spreads[i]
+		l := lineOf(s)
+		for _, end := range []struct {
+			heading string
+			at      float64
+			d       Deviation
+		}{{"Minus", -1, s.Minus}, {"Plus", 1, s.Plus}} {
+			if end.d.By == 0 {
+				continue
+			}
+			var step *model.Step
+			if s.Step >= 0 {
+				step = &p.Steps[s.Step]
+			}
+			if s.Of.positive && end.at < 0 {
+				if v := s.Of.value(&p.Product.Product, step); v-end.d.of(v) <= 0 {
+					l.Fault(end.heading, end.d.Typed, spreadTooFar, s.Named(), p.Name)
+					continue
+				}
+			}
+			if s.Of.Name == "film coefficient" && !end.d.Share && anyExposure(step, worksOut) {
+				l.Fault(end.heading, end.d.Typed, spreadFilm, s.StepName)
+				continue
+			}
+			if s.Of.Name == "duration" && anyExposure(step, func(e *model.Exposure) bool {
+				n := len(e.Medium.TimesS)
+				return n > 1 && e.Medium.TimesS[n-1] < step.DurationS+end.at*end.d.of(step.DurationS)-1e-6
+			}) {
+				l.Fault(end.heading, end.d.Typed, spreadCourse, s.StepName)
+				continue
+			}
+			at := make([]float64, len(p.Spreads))
+			at[i] = end.at
+			q := p.Varied(at)
+			for _, e := range model.Check(q.Product, q.Steps) {
+				if e.Level == cell.Fault && !before[e.Msg] {
+					l.Fault(end.heading, end.d.Typed, spreadEnd, p.Name, e.Typed, e.Msg)
+					break
+				}
+			}
+		}
+		p.suffer(l.because)
+	}
+}

@@ -1,0 +1,385 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"runtime"
+	"slices"
+	"strings"
+	"sync"
+
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/report"
+	"slowpoint/rules"
+)
+
+// fullSpreads is how many quantities at most are tried at every combination of their ends; of more, the ends that are worse alone make the
+// first corner, and single flips and pairs of them lead on from there.
+const fullSpreads = 4
+
+// corner is where each spread of a product stands: −1 at its Minus end, 0 as typed, 1 at its Plus end.
+type corner []int8
+
+// places are the same as workbook.Varied takes them.
+func (c corner) places() []float64 {
+	out := make([]float64, len(c))
+	for i, v := range c {
+		out[i] = float64(v)
+	}
+	return out
+}
+
+// with is the corner with one spread elsewhere.
+func (c corner) with(i int, at int8) corner {
+	d := slices.Clone(c)
+	d[i] = at
+	return d
+}
+
+// nominal tells whether everything is as typed.
+func (c corner) nominal() bool { return !slices.ContainsFunc(c, func(v int8) bool { return v != 0 }) }
+
+// words are the ends of a corner in words, in the order of the plan.
+func (c corner) words(p *workbook.Product) []string {
+	var out []string
+	for i, v := range c {
+		if v != 0 {
+			out = append(out, p.Spreads[i].End(int(v)))
+		}
+	}
+	return out
+}
+
+// search looks for the least favourable corner of each limit of a product. Every combination is solved once, for all limits.
+type search struct {
+	r       *runner
+	p       *workbook.Product
+	options model.Options
+	solved  map[string][]rules.Finding // by corner: a finding for each limit that applies, in their order
+}
+
+// key is a corner as the index of the map.
+func (c corner) key() string {
+	b := make([]byte, len(c))
+	for i, v := range c {
+		b[i] = byte(v + 1)
+	}
+	return string(b)
+}
+
+func (s *search) at(c corner) []rules.Finding { return s.solved[c.key()] }
+
+// ends are the places, other than now, that a spread may stand at.
+func (s *search) ends(i int, now int8) []int8 {
+	var out []int8
+	for _, v := range []int8{-1, 0, 1} {
+		d := s.p.Spreads[i].Plus
+		if v < 0 {
+			d = s.p.Spreads[i].Minus
+		}
+		if v != now && (v == 0 || d.By > 0) {
+			out = append(out, v)
+		}
+	}
+	return out
+}
+
+// need solves the corners of a list that were not solved yet, on all processors.
+func (s *search) need(list []corner) error {
+	var todo []corner
+	seen := map[string]bool{}
+	for _, c := range list {
+		if k := c.key(); s.solved[k] == nil && !seen[k] {
+			seen[k] = true
+			todo = append(todo, c)
+		}
+	}
+	at := make([][]float64, len(todo))
+	for i, c := range todo {
+		at[i] = c.places()
+	}
+	found, err := s.solve(at)
+	if err != nil {
+		return err
+	}
+	for i, c := range todo {
+		s.solved[c.key()] = append([]rules.Finding{}, found[i]...) // not nil where no limit applies
+	}
+	return nil
+}
+
+// solve judges the product at each of some places between the ends, on all processors. Of what fails the first in order is told.
+func (s *search) solve(places [][]float64) ([][]rules.Finding, error) {
+	found, errs := make([][]rules.Finding, len(places)), make([]error, len(places))
+	var working sync.WaitGroup
+	slots := make(chan struct{}, runtime.GOMAXPROCS(0))
+	for i, at := range places {
+		slots <- struct{}{}
+		working.Go(func() {
+			defer func() {
+				if fault := recover(); fault != nil {
+					errs[i] = fmt.Errorf("fault of the program at its unfavourable ends: %v", fault)
+				}
+				<-slots
+			}()
+			q := s.p.Varied(at)
+			run, err := s.r.predict(&q, s.options)
+			if err != nil {
+				errs[i] = s.refusal(at, err)
+				return
+			}
+			found[i] = run.find(s.r.plan.Limits)
+		})
+	}
+	working.Wait()
+	for _, err := range errs {
+		if err != nil {
+			return nil, err
+		}
+	}
+	return found, nil
+}
+
+// refusal words why a corner cannot be calculated, at the row of the first spread that it moves.
+func (s *search) refusal(at []float64, err error) error {
+	c := make(corner, len(at))
+	for i, v := range at {
+		switch {
+		case v < 0:
+			c[i] = -1
+		case v > 0:
+			c[i] = 1
+		}
+	}
+	var es cell.Errors
+	i := slices.IndexFunc(c, func(v int8) bool { return v != 0 })
+	if !errors.As(err, &es) || i < 0 || len(es) == 0 {
+		return err
+	}
+	return cell.Errors{{At: s.p.Spreads[i].At, Level: cell.Fault, Field: "Quantity", Typed: s.p.Spreads[i].Of.Name,
+		Msg:  fmt.Sprintf("varies together with others to what cannot be calculated (%s): %s", strings.Join(c.words(s.p), ", "), strings.TrimSpace(es[0].Typed+" "+es[0].Msg)),
+		Hint: "let them vary less, or change what it is about"}}
+}
+
+// corners finds the least favourable corner of each limit: directions by the effect of each end alone, then whatever makes it worse.
+// A quantity whose both ends are better than its typed value stays there.
+func (s *search) corners() ([]corner, error) {
+	n := len(s.p.Spreads)
+	zero := make(corner, n)
+	first := []corner{zero}
+	for i := range zero {
+		for _, v := range s.ends(i, 0) {
+			first = append(first, zero.with(i, v))
+		}
+	}
+	if n <= fullSpreads {
+		for k := 0; k < len(first); k++ { // grows while it is walked: each combination of ends
+			for i := range zero {
+				for _, v := range s.ends(i, 0) {
+					if c := first[k].with(i, v); !slices.ContainsFunc(first, func(o corner) bool { return slices.Equal(o, c) }) {
+						first = append(first, c)
+					}
+				}
+			}
+		}
+	}
+	if err := s.need(first); err != nil {
+		return nil, err
+	}
+	worst := make([]corner, len(s.at(zero)))
+	for k := range worst {
+		c := zero
+		for i := range zero {
+			best := zero
+			for _, v := range s.ends(i, 0) {
+				if d := zero.with(i, v); rules.Worse(&s.at(d)[k], &s.at(best)[k]) {
+					best = d
+				}
+			}
+			c = c.with(i, best[i])
+		}
+		worst[k] = c
+	}
+	if err := s.need(worst); err != nil {
+		return nil, err
+	}
+	for k := range worst {
+		for _, c := range first {
+			if rules.Worse(&s.at(c)[k], &s.at(worst[k])[k]) {
+				worst[k] = c
+			}
+		}
+	}
+	return worst, s.climb(worst)
+}
+
+// climb moves each limit's corner as long as one flip makes it worse. Where any did, the quantities bear on one another, and pairs of
+// flips are tried too before it is left.
+func (s *search) climb(worst []corner) error {
+	moved, paired := make([]bool, len(worst)), make([]bool, len(worst))
+	for {
+		var list []corner
+		next := make([][]corner, len(worst))
+		for k, c := range worst {
+			next[k] = s.flips(c)
+			if paired[k] {
+				for _, d := range next[k] {
+					next[k] = append(next[k], s.flips(d)...)
+				}
+			}
+			list = append(list, next[k]...)
+		}
+		if err := s.need(list); err != nil {
+			return err
+		}
+		open := false
+		for k := range worst {
+			best := worst[k]
+			for _, c := range next[k] {
+				if rules.Worse(&s.at(c)[k], &s.at(best)[k]) {
+					best = c
+				}
+			}
+			switch {
+			case !slices.Equal(best, worst[k]):
+				worst[k], moved[k], paired[k], open = best, true, false, true
+			case moved[k] && !paired[k]:
+				paired[k], open = true, true
+			}
+		}
+		if !open {
+			return nil
+		}
+	}
+}
+
+// flips are the corners that differ in one quantity.
+func (s *search) flips(c corner) []corner {
+	var out []corner
+	for i, now := range c {
+		for _, v := range s.ends(i, now) {
+			out = append(out, c.with(i, v))
+		}
+	}
+	return out
+}
+
+// worst judges each limit of a product at its own least favourable corner. out is what the typed values give, with its findings before
+// groups join them; what the corners give takes their place.
+func (r *runner) worst(p *workbook.Product, out *report.Product, typed []rules.Finding, o model.Options) error {
+	s := &search{r: r, p: p, options: o, solved: map[string][]rules.Finding{}}
+	zero := make(corner, len(p.Spreads))
+	s.solved[zero.key()] = append([]rules.Finding{}, typed...)
+	if r.corners != nil {
+		return s.known(out, typed)
+	}
+	worst, err := s.corners()
+	if err != nil {
+		return err
+	}
+	findings := make([]rules.Finding, len(worst))
+	runs := map[string]*prediction{}
+	for k, c := range worst {
+		f := s.at(c)[k]
+		w := report.WorstCase{Limit: f.Limit, At: c, Ends: c.words(p), Nominal: typed[k], Drivers: s.drivers(k)}
+		if !c.nominal() {
+			if runs[c.key()] == nil {
+				q := p.Varied(c.places())
+				if runs[c.key()], err = r.predict(&q, o); err != nil {
+					return err
+				}
+			}
+			run := runs[c.key()]
+			f.Run = out.AtWorst(fmt.Sprint(len(runs)), f.Run, run.runOf(f.Run), &run.product.Product)
+			f.Why = strings.TrimSpace(f.Why + " " + w.Words())
+		}
+		findings[k] = f
+		out.Worst = append(out.Worst, w)
+	}
+	if r.options != nil && r.options.samples > 0 {
+		if err := s.share(r.options.samples, r.options.seed, out.Worst); err != nil {
+			return err
+		}
+	}
+	out.Judgement = rules.Conclude(findings, r.plan.Groups)
+	return nil
+}
+
+// known judges each limit at the corner that was found for it before, or as typed where that is worse.
+func (s *search) known(out *report.Product, typed []rules.Finding) error {
+	findings := slices.Clone(typed)
+	for k := range findings {
+		c := s.r.corners[findings[k].Limit.At]
+		if c == nil {
+			continue
+		}
+		if err := s.need([]corner{c}); err != nil {
+			return err
+		}
+		if f := &s.at(c)[k]; rules.Worse(f, &findings[k]) {
+			findings[k] = *f
+		}
+	}
+	out.Judgement = rules.Conclude(findings, s.r.plan.Groups)
+	return nil
+}
+
+// atCorners is the same job at the corners that were found for a product: what helps most is looked for there, at the cost of a few runs.
+func (r *runner) atCorners(now *report.Product) *runner {
+	if len(now.Worst) == 0 {
+		return r
+	}
+	q := &runner{plan: r.plan, head: r.head, options: r.options, corners: map[cell.Ref]corner{}}
+	for i := range now.Worst {
+		q.corners[now.Worst[i].Limit.At] = now.Worst[i].At
+	}
+	return q
+}
+
+// drivers rank what varies by the room that each leaves alone, the least first.
+func (s *search) drivers(k int) []report.Driver {
+	zero := make(corner, len(s.p.Spreads))
+	typed := &s.at(zero)[k]
+	type ranked struct {
+		report.Driver
+		worst *rules.Finding
+	}
+	var list []ranked
+	for i := range s.p.Spreads {
+		sp := &s.p.Spreads[i]
+		d := ranked{report.Driver{Quantity: sp.Named(), Basis: sp.Basis, At: sp.At}, typed}
+		for _, v := range s.ends(i, 0) {
+			f := &s.at(zero.with(i, v))[k]
+			d.Ends = append(d.Ends, report.DriverEnd{Words: sp.End(int(v)), Verdict: f.Verdict, K: less(f.MarginK, typed.MarginK), S: less(f.MarginS, typed.MarginS)})
+			if rules.Worse(f, d.worst) {
+				d.worst = f
+			}
+		}
+		list = append(list, d)
+	}
+	slices.SortStableFunc(list, func(a, b ranked) int {
+		switch {
+		case rules.Worse(a.worst, b.worst):
+			return -1
+		case rules.Worse(b.worst, a.worst):
+			return 1
+		}
+		return 0
+	})
+	out := make([]report.Driver, len(list))
+	for i := range list {
+		out[i] = list[i].Driver
+	}
+	return out
+}
+
+// less is a minus b; nil where one of them does not exist.
+func less(a, b *float64) *float64 {
+	if a == nil || b == nil {
+		return nil
+	}
+	d := *a - *b
+	return &d
+}
