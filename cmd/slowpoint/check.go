@@ -64,7 +64,7 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 		return err
 	}
 	names := filesOf(plan)
-	if head.LeftOut, err = keepOnly(plan, o.only); err != nil {
+	if head.LeftOut, err = keepOnly(plan, "--only", o.only); err != nil {
 		return err
 	}
 	if err := files.makeFolder(folder); err != nil {
@@ -221,8 +221,8 @@ func filesOf(plan *workbook.Plan) map[string]string {
 	return out
 }
 
-// keepOnly drops the products that were not asked for, and names them; an unknown name is an error.
-func keepOnly(plan *workbook.Plan, only []string) (left []string, err error) {
+// keepOnly drops the products that were not asked for by a flag, and names them; an unknown name is an error.
+func keepOnly(plan *workbook.Plan, flag string, only []string) (left []string, err error) {
 	if len(only) == 0 {
 		return nil, nil
 	}
@@ -235,7 +235,7 @@ func keepOnly(plan *workbook.Plan, only []string) (left []string, err error) {
 	}
 	for _, o := range only {
 		if !slices.ContainsFunc(names, func(n string) bool { return sameName(n, o) }) {
-			return nil, &failure{exitInput, fmt.Errorf("--only %q: the plan has no product of that name; it has %s", o, strings.Join(names[:min(len(names), 20)], ", "))}
+			return nil, &failure{exitInput, fmt.Errorf("%s %q: the plan has no product of that name; it has %s", flag, o, strings.Join(names[:min(len(names), 20)], ", "))}
 		}
 	}
 	keep := func(n string) bool {
