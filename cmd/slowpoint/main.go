@@ -123,6 +123,6 @@ It supports planning; it does not replace measurement. Your food authority decid
 		CompletionOptions: cobra.CompletionOptions{HiddenDefaultCmd: true},
 	}
 	root.SetFlagErrorFunc(plainFlag)
-	root.AddCommand(checkCommand(files), sizeCommand(files), readCommand(), importCommand(files), blankCommand(files), codesCommand(files), foodsCommand(), verifyCommand(), versionCommand())
+	root.AddCommand(checkCommand(files), sizeCommand(files), compareCommand(files), readCommand(), importCommand(files), blankCommand(files), codesCommand(files), foodsCommand(), verifyCommand(), versionCommand())
 	return root
 }
