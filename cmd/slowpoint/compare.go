@@ -35,7 +35,7 @@ at its slowest place: the coldest place in steps that heat and the hottest in co
 
 Exit codes: 0 nothing got worse; 1 a verdict, a margin or a course got worse, a limit is gone, or something new is not met; 2 one of the
 plans, or part of it, could not be used; 3 the results could not be written, or a fault of the program.`,
-		Example: "  slowpoint compare plan.xlsx my-plan.xlsx", Args: cobra.ExactArgs(2),
+		Example: "  slowpoint compare last-year.xlsx plan.xlsx", Args: cobra.ExactArgs(2),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			c, head, err := comparePlans(cmd.ErrOrStderr(), args[0], args[1], date)
 			if err != nil {
