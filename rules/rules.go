@@ -3,6 +3,8 @@
 package rules
 
 import (
+	"math"
+
 	"slowpoint/model"
 	"slowpoint/model/cell"
 )
@@ -146,6 +148,14 @@ type Finding struct {
 	CarryOver   string     // that the limit is met only by what the food gets after its heating, in a sentence with numbers; "" elsewhere
 	StillWarm   string     // of a limit on cooling that did not apply though the food was warm enough: how warm, in a clause; "" elsewhere
 	Run         string     // the further run that this is the finding of; "" for the usual one
+}
+
+// Same tells whether two findings on one limit say the same: verdict, level, value and margins, but for the last digits.
+func (f *Finding) Same(g *Finding) bool {
+	alike := func(a, b *float64) bool {
+		return (a == nil) == (b == nil) && (a == nil || *a == *b || math.Abs(*a-*b) <= 1e-6*(1+math.Abs(*a)))
+	}
+	return f.Verdict == g.Verdict && f.Level == g.Level && alike(f.Value, g.Value) && alike(f.MarginK, g.MarginK) && alike(f.MarginS, g.MarginS)
 }
 
 // GroupFinding is what a group of limits says.

@@ -64,7 +64,7 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 		plan.Problems.Sort(plan.Sheets)
 	}
 	names := filesOf(plan)
-	left, err := keepOnly(plan, o.only)
+	left, err := keepOnly(plan, "--only", o.only)
 	if err != nil {
 		return err
 	}
@@ -230,8 +230,8 @@ func filesOf(plan *workbook.Plan) map[string]string {
 	return out
 }
 
-// keepOnly drops the products that were not asked for, and names them; an unknown name is an error.
-func keepOnly(plan *workbook.Plan, only []string) (left []string, err error) {
+// keepOnly drops the products that were not asked for by a flag, and names them; an unknown name is an error.
+func keepOnly(plan *workbook.Plan, flag string, only []string) (left []string, err error) {
 	if len(only) == 0 {
 		return nil, nil
 	}
@@ -244,7 +244,7 @@ func keepOnly(plan *workbook.Plan, only []string) (left []string, err error) {
 	}
 	for _, o := range only {
 		if !slices.ContainsFunc(names, func(n string) bool { return sameName(n, o) }) {
-			return nil, &failure{exitInput, fmt.Errorf("--only %q: the plan has no product of that name; it has %s", o, strings.Join(names[:min(len(names), 20)], ", "))}
+			return nil, &failure{exitInput, fmt.Errorf("%s %q: the plan has no product of that name; it has %s", flag, o, strings.Join(names[:min(len(names), 20)], ", "))}
 		}
 	}
 	keep := func(n string) bool {

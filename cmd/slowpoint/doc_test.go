@@ -417,7 +417,7 @@ func TestLike(t *testing.T) {
 // TestHelpExamples runs the examples of every --help.
 func TestHelpExamples(t *testing.T) {
 	confirmed := ownList(t)
-	for _, name := range []string{"plan.xlsx", "my-plan.xlsx"} {
+	for _, name := range []string{"plan.xlsx", "my-plan.xlsx", "last-year.xlsx"} {
 		if code := run([]string{"blank", "--demo", name}, nil, &bytes.Buffer{}, os.Stderr); code != 0 {
 			t.Fatalf("blank: exit code %d", code)
 		}

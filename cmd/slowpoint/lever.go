@@ -2,7 +2,6 @@ package main
 
 import (
 	"fmt"
-	"math"
 	"slices"
 
 	"slowpoint/cmd/slowpoint/workbook"
@@ -88,14 +87,11 @@ func (r *runner) without(fixed []*rules.Finding) *runner {
 
 // moves notes the limits of which a change says anything else than before.
 func moves(before, after *report.Product, moved map[*rules.Limit]bool) {
-	differ := func(a, b *float64) bool {
-		return (a == nil) != (b == nil) || a != nil && math.Abs(*a-*b) > 1e-6*(1+math.Abs(*a)) // beyond the last digits
-	}
 	for i := range before.Judgement.Findings {
 		f := &before.Judgement.Findings[i]
 		for k := range after.Judgement.Findings {
 			if g := &after.Judgement.Findings[k]; g.Limit == f.Limit {
-				moved[f.Limit] = moved[f.Limit] || g.Verdict != f.Verdict || g.Level != f.Level || differ(f.Value, g.Value) || differ(f.MarginK, g.MarginK) || differ(f.MarginS, g.MarginS)
+				moved[f.Limit] = moved[f.Limit] || !f.Same(g)
 			}
 		}
 	}
@@ -147,13 +143,7 @@ func (r *runner) search(p *workbook.Product, now *report.Product, c *change, mov
 	if good == 0 {
 		return 0, false
 	}
-	for good-bad > 1 {
-		if mid := (good + bad) / 2; meets(mid, look) {
-			good = mid
-		} else {
-			bad = mid
-		}
-	}
+	_, good = bisect(bad, good, func(k int) bool { return meets(k, look) })
 	first := good
 	for ; good <= c.most; good++ { // what is named is confirmed by the run that counts
 		if meets(good, model.Options{}) {
@@ -170,6 +160,19 @@ func (r *runner) search(p *workbook.Product, now *report.Product, c *change, mov
 		}
 	}
 	return good, every
+}
+
+// bisect narrows the steps between one at which something does not hold and one at which it does, on whichever side, until they are
+// neighbours.
+func bisect(bad, good int, holds func(k int) bool) (lastBad, firstGood int) {
+	for good-bad > 1 || bad-good > 1 {
+		if mid := (good + bad) / 2; holds(mid) {
+			good = mid
+		} else {
+			bad = mid
+		}
+	}
+	return bad, good
 }
 
 // keeps tells whether every limit that was met still is.

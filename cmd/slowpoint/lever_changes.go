@@ -89,11 +89,7 @@ func smaller(p *workbook.Product) (change, bool) {
 			}
 			return trimmed(at(n)*1000) + symbol
 		},
-		set: func(q *workbook.Product, n int) {
-			_, z := governing(&q.Product)
-			*z = at(n)
-			q.Points = nil // they may lie outside the smaller piece; a limit on one of them then cannot be told
-		}}
+		set: func(q *workbook.Product, n int) { resize(q, governingColumn(&p.Product), at(n)) }}
 	for k := 1; k <= leverSteps; k++ { // downwards, since a very small piece loses the heat that it carries over
 		share := 1 - (1-leverLeast)*float64(k*k)/(leverSteps*leverSteps)
 		c.try = append(c.try, int(top-math.Floor(*size/step*share)))
@@ -148,7 +144,7 @@ func (r *runner) longer(p *workbook.Product, h *model.History, l *rules.Limit) (
 	c := change{what: s.Name, from: minutes(s.DurationS), most: most, aims: heats,
 		far: fmt.Sprintf("%s up to %s", s.Name, minutes((least+float64(most))*60)),
 		to:  func(n int) string { return minutes((least + float64(n)) * 60) },
-		set: func(q *workbook.Product, n int) { q.Steps[i].DurationS = (least + float64(n)) * 60 }}
+		set: func(q *workbook.Product, n int) { lasting(q, i, (least+float64(n))*60) }}
 	for _, share := range []float64{0.06, 0.15, 0.3, 0.6, 1} {
 		c.try = append(c.try, int(math.Ceil(share*float64(most))))
 	}
@@ -169,21 +165,34 @@ func (r *runner) colder(p *workbook.Product, l *rules.Limit) (change, bool) {
 		return change{}, false
 	}
 	at := func(n int) float64 { return top - float64(n)*step }
-	constant := func(e *model.Exposure, c float64) {
+	return change{what: s.Name + " in", from: r.degrees(nowC, false), most: most, aims: cools,
+		far: fmt.Sprintf("%s in as little as %s", s.Name, r.degrees(at(most), false)), try: []int{most},
+		to:  func(n int) string { return r.degrees(at(n), true) },
+		set: func(q *workbook.Product, n int) { surround(q, i, at(n)) }}, true
+}
+
+// resize gives one size of a product, by its column, another length, m.
+func resize(q *workbook.Product, column string, m float64) {
+	*q.Size.Of(column) = m
+	q.Points = nil // they may lie outside the smaller piece; a limit on one of them then cannot be told
+}
+
+// lasting gives a step another duration, s. The steps of q are its own.
+func lasting(q *workbook.Product, i int, s float64) { q.Steps[i].DurationS = s }
+
+// surround gives a step of one constant medium another one, °C, and with it the faces that had the same. The steps of q are its own.
+func surround(q *workbook.Product, i int, c float64) {
+	nowC := q.Steps[i].Medium.C[0]
+	constant := func(e *model.Exposure) {
 		if len(e.Medium.C) == 1 && e.Medium.C[0] == nowC {
 			e.Medium.C = []float64{c}
 		}
 	}
-	return change{what: s.Name + " in", from: r.degrees(nowC, false), most: most, aims: cools,
-		far: fmt.Sprintf("%s in as little as %s", s.Name, r.degrees(at(most), false)), try: []int{most},
-		to: func(n int) string { return r.degrees(at(n), true) },
-		set: func(q *workbook.Product, n int) {
-			constant(&q.Steps[i].Exposure, at(n))
-			q.Steps[i].Faces = slices.Clone(q.Steps[i].Faces)
-			for k := range q.Steps[i].Faces {
-				constant(&q.Steps[i].Faces[k].Exposure, at(n))
-			}
-		}}, true
+	constant(&q.Steps[i].Exposure)
+	q.Steps[i].Faces = slices.Clone(q.Steps[i].Faces)
+	for k := range q.Steps[i].Faces {
+		constant(&q.Steps[i].Faces[k].Exposure)
+	}
 }
 
 // lastStep is the last step that a limit is about and that is fit; -1 if there is none.
@@ -220,13 +229,20 @@ func (r *runner) onScale(c float64, way func(float64) float64) float64 {
 // governing is the size that decides how fast heat gets in: the smaller of those that end in cooled faces. A layered slab and what is
 // stirred have none of their own.
 func governing(p *model.Product) (name string, size *float64) {
+	column := governingColumn(p)
+	return strings.ToLower(column), p.Size.Of(column)
+}
+
+// governingColumn is the column of that size; "" if there is none.
+func governingColumn(p *model.Product) string {
 	if p.Shape == nil || p.Shape == model.Stirred {
-		return "", nil
+		return ""
 	}
+	found := ""
 	for _, column := range p.Shape.Needs {
-		if v := p.Size.Of(column); size == nil || *v < *size {
-			name, size = strings.ToLower(column), v
+		if found == "" || *p.Size.Of(column) < *p.Size.Of(found) {
+			found = column
 		}
 	}
-	return name, size
+	return found
 }

@@ -8,6 +8,7 @@ import (
 	"strings"
 
 	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model/cell"
 	"slowpoint/model/unit"
 )
 
@@ -17,6 +18,7 @@ type Change struct {
 	What    string // "new", "gone", "not imported now", or the column, behind its step, face or point
 	Before  string // as it stood there, with its unit; "" for a blank
 	Now     string
+	Was     string // the cell in the earlier plan; "" where that has none
 	Cell    string // of their files or of the mapping: "Recipes.xlsx › Cook-chill!F17"; of what is gone, "was …", the place where it was
 }
 
@@ -108,12 +110,20 @@ func (it *item) words(c *workbook.Column) string {
 	return ""
 }
 
+// ref is the cell of a value that was read, or its row if it is blank.
+func (it *item) ref(c *workbook.Column) cell.Ref {
+	if c != nil && it.line.Filled(c.Heading) {
+		return it.line.At(c.Heading)
+	}
+	return it.line.Ref()
+}
+
 // at is where a value comes from, or the row if it is blank.
 func (it *item) at(c *workbook.Column) string {
 	if it.made == nil {
-		ref := it.line.Ref()
-		if c != nil && it.line.Filled(c.Heading) {
-			ref = it.line.At(c.Heading)
+		ref := it.ref(c)
+		if it.r == nil {
+			return ref.String()
 		}
 		return it.r.Where(Place{File: -1, Sheet: ref.Sheet, Row: ref.Row, Col: ref.Col})
 	}
@@ -191,6 +201,19 @@ func Since(name string, r *Result) ([]Change, error) {
 		return nil, fmt.Errorf("%s: this is not a plan: it has no visible sheet Products; give the plan that was written by an earlier import", filepath.Base(name))
 	}
 	return compare(stockOf(t), r.stock(), r), nil
+}
+
+// Between compares two plans, workbooks or folders, as Since does; the cells are those of the plans.
+func Between(old, now string) ([]Change, error) {
+	var read [2]*stock
+	for i, name := range []string{old, now} {
+		t, err := workbook.ReadTables(name, "plan", workbook.Sheets)
+		if err != nil {
+			return nil, err
+		}
+		read[i] = stockOf(t)
+	}
+	return compare(read[0], read[1], &Result{}), nil
 }
 
 // origins are the cells of the column #From of a sheet of an earlier plan, by row, without the checksum.
@@ -364,7 +387,10 @@ func only(s *workbook.Sheet, it *item, word string, other, told, products map[st
 	} else {
 		told[it.first] = true
 	}
-	if it.r != nil {
+	if word == "gone" && it.line != nil {
+		c.Was = it.line.Ref().String()
+	}
+	if it.r != nil || word == "new" {
 		c.Cell = it.at(nil)
 	} else if it.from != "" {
 		c.Cell = "was " + it.from
@@ -388,7 +414,7 @@ func changes(s *workbook.Sheet, old, now *item) []Change {
 		if now.what != "" {
 			what = now.what + ": " + what
 		}
-		out = append(out, Change{Product: now.owner, What: what, Before: a.shown, Now: b.shown, Cell: now.at(c)})
+		out = append(out, Change{Product: now.owner, What: what, Before: a.shown, Now: b.shown, Was: old.ref(c).String(), Cell: now.at(c)})
 	}
 	return out
 }

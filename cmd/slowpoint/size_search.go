@@ -1,0 +1,260 @@
+package main
+
+import (
+	"errors"
+	"math"
+	"slices"
+	"sync"
+
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model/cell"
+	"slowpoint/report"
+	"slowpoint/rules"
+)
+
+// sizeGrid is how many intervals a range is cut into before the verdict's changes are narrowed down; sizeTurns how often an interval
+// beside a turn of a margin is halved to see whether it changes sides there.
+const (
+	sizeGrid  = 24
+	sizeTurns = 4
+)
+
+// judgement gives the findings on a product with its steps; a search knows nothing else of how they come about.
+type judgement func(p *workbook.Product) ([]rules.Finding, error)
+
+// nominal judges at the values of the plan, each as it stands there.
+func (r *runner) nominal(p *workbook.Product) ([]rules.Finding, error) {
+	d, err := r.judged(p)
+	if es := (cell.Errors)(nil); errors.As(err, &es) {
+		for i, e := range es {
+			es[i] = p.AsTyped(r.plan.Locate(e))
+		}
+		return nil, errors.New(firstFault(es))
+	}
+	if err != nil {
+		return nil, err
+	}
+	return d.Judgement.Findings, nil
+}
+
+// meetsEvery tells whether a must limit applies and all that do are met.
+func meetsEvery(fs []rules.Finding) bool {
+	n := 0
+	for i := range fs {
+		if missed(&fs[i]) {
+			return false
+		}
+		if fs[i].Level == "must" && fs[i].Verdict == rules.Met {
+			n++
+		}
+	}
+	return n > 0
+}
+
+// examined is what was found at a step of a dial.
+type examined struct {
+	findings []rules.Finding
+	err      error // it cannot be calculated there
+	meets    bool
+}
+
+// scan is a search along a dial.
+type scan struct {
+	p       *workbook.Product
+	d       *dial
+	judge   judgement
+	workers int // how many values are judged at once
+	seen    map[int]*examined
+	spacing int // of the grid, in steps
+}
+
+// try judges one value, given as it is computed in.
+func (s *scan) try(value float64) *examined {
+	q := *s.p
+	q.Steps = slices.Clone(s.p.Steps)
+	s.d.set(&q, value)
+	e := &examined{}
+	if e.findings, e.err = s.judge(&q); e.err == nil {
+		e.meets = meetsEvery(e.findings)
+	}
+	return e
+}
+
+// at judges a step, once.
+func (s *scan) at(k int) *examined {
+	if e := s.seen[k]; e != nil {
+		return e
+	}
+	e := s.try(s.d.value(k))
+	s.seen[k] = e
+	return e
+}
+
+// all judges several steps, on as many processors as the search may use.
+func (s *scan) all(ks []int) {
+	out := make([]*examined, len(ks))
+	slots := make(chan struct{}, s.workers)
+	var working sync.WaitGroup
+	for i, k := range ks {
+		if s.seen[k] != nil {
+			continue
+		}
+		slots <- struct{}{}
+		working.Go(func() {
+			out[i] = s.try(s.d.value(k))
+			<-slots
+		})
+	}
+	working.Wait()
+	for i, k := range ks {
+		if out[i] != nil {
+			s.seen[k] = out[i]
+		}
+	}
+}
+
+// run scans the range on a grid, looks closer where a margin turns round near its limit, and narrows every change of the verdict down to two
+// neighbouring steps: a margin need not go one way.
+func (s *scan) run() {
+	s.seen = map[int]*examined{}
+	s.spacing = max(1, (s.d.hi-s.d.lo+sizeGrid-1)/sizeGrid)
+	var grid []int
+	for k := s.d.lo; k < s.d.hi; k += s.spacing {
+		grid = append(grid, k)
+	}
+	s.all(append(grid, s.d.hi))
+	for range sizeTurns {
+		if more := s.turns(); len(more) > 0 {
+			s.all(more)
+		} else {
+			break
+		}
+	}
+	ks := s.steps()
+	for i := 1; i < len(ks); i++ {
+		a, b := ks[i-1], ks[i]
+		if s.seen[a].meets == s.seen[b].meets {
+			continue
+		}
+		if s.seen[a].meets {
+			a, b = b, a
+		}
+		bisect(a, b, func(k int) bool { return s.at(k).meets })
+	}
+}
+
+// steps are those that were judged, rising.
+func (s *scan) steps() []int {
+	ks := make([]int, 0, len(s.seen))
+	for k := range s.seen {
+		ks = append(ks, k)
+	}
+	slices.Sort(ks)
+	return ks
+}
+
+// turns are the steps half way to the neighbours of one at which a margin, in K or in s, turns round on one side of nought and might reach
+// the other: it is nearer to nought than it is to a neighbour's.
+func (s *scan) turns() []int {
+	ks := s.steps()
+	var more []int
+	for i := 1; i+1 < len(ks); i++ {
+		a, b, c := s.seen[ks[i-1]], s.seen[ks[i]], s.seen[ks[i+1]]
+		if a.err != nil || b.err != nil || c.err != nil || a.meets != b.meets || b.meets != c.meets {
+			continue
+		}
+		turned := false
+		for n := range b.findings {
+			if n >= len(a.findings) || n >= len(c.findings) || b.findings[n].Level != "must" {
+				continue
+			}
+			turned = turned || turnsNear(a.findings[n].MarginK, b.findings[n].MarginK, c.findings[n].MarginK) ||
+				turnsNear(a.findings[n].MarginS, b.findings[n].MarginS, c.findings[n].MarginS)
+		}
+		if !turned {
+			continue
+		}
+		for _, k := range []int{(ks[i-1] + ks[i]) / 2, (ks[i] + ks[i+1]) / 2} {
+			if s.seen[k] == nil && !slices.Contains(more, k) {
+				more = append(more, k)
+			}
+		}
+	}
+	return more
+}
+
+// turnsNear tells whether the middle of three margins is the one nearest to nought, all on one side of it, and by more than it is from it.
+func turnsNear(a, b, c *float64) bool {
+	if a == nil || b == nil || c == nil || *b == 0 || *a**b <= 0 || *c**b <= 0 {
+		return false
+	}
+	x, y, z := math.Abs(*a), math.Abs(*b), math.Abs(*c)
+	return y <= x && y <= z && y < max(x, z)-y
+}
+
+// fixed are the must limits that are missed at every value and say the same at all of them, so that nothing on the dial helps.
+func (s *scan) fixed() []*rules.Limit {
+	var first []rules.Finding
+	moved := map[*rules.Limit]bool{}
+	for _, k := range s.steps() {
+		e := s.seen[k]
+		if e.err != nil {
+			continue
+		}
+		if first == nil {
+			first = e.findings
+		}
+		for i := range first {
+			moved[first[i].Limit] = moved[first[i].Limit] || i >= len(e.findings) || !first[i].Same(&e.findings[i])
+		}
+	}
+	var out []*rules.Limit
+	for i := range first {
+		if missed(&first[i]) && !moved[first[i].Limit] {
+			out = append(out, first[i].Limit)
+		}
+	}
+	return out
+}
+
+// size searches along a dial and makes what the documents show. Where limits that nothing on the dial changes are missed, it looks for what
+// meets the others.
+func (r *runner) size(p *workbook.Product, d *dial, judge judgement, basis string, workers int) *report.Sizing {
+	s := &scan{p: p, d: d, judge: judge, workers: workers}
+	s.run()
+	fixed := s.fixed()
+	if len(fixed) > 0 {
+		all := s
+		s = &scan{p: p, d: d, workers: workers, judge: func(q *workbook.Product) ([]rules.Finding, error) {
+			fs, err := judge(q)
+			return slices.DeleteFunc(fs, func(f rules.Finding) bool { return slices.Contains(fixed, f.Limit) }), err
+		}}
+		if s.run(); len(s.fixed()) > 0 || !slices.ContainsFunc(s.steps(), func(k int) bool { return s.seen[k].meets }) {
+			s, fixed = all, nil
+		}
+	}
+	out := &report.Sizing{Product: p.Name, Process: p.Process, What: d.what, Most: d.most, Basis: basis, Step: d.stepWords(r, p, 1), Spacing: d.stepWords(r, p, s.spacing)}
+	for _, l := range fixed {
+		out.Fixed = append(out.Fixed, l.Name)
+	}
+	point := func(v float64, e *examined) *report.SizePoint {
+		x, symbol := d.plain(v)
+		out.Unit = symbol
+		pt := &report.SizePoint{Value: x, Words: d.words(r, p, v), Findings: e.findings, Meets: e.meets}
+		if e.err != nil {
+			pt.Refused = e.err.Error()
+		}
+		return pt
+	}
+	now := &examined{}
+	if now.findings, now.err = judge(p); now.err == nil {
+		now.meets = meetsEvery(now.findings)
+	}
+	out.Now = point(d.now, now)
+	ks := s.steps()
+	for _, k := range ks {
+		out.Curve = append(out.Curve, point(d.value(k), s.seen[k]))
+	}
+	out.Conclude()
+	return out
+}
