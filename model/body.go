@@ -10,14 +10,15 @@ import (
 // body is the geometry of a history: between places in the food and coordinates on its axes, and where to look.
 // A record has none.
 type body struct {
-	kinds [3]axisKind
-	radii [3]float64
-	by    [3]stretch   // of the coordinates
-	ball  *spheroidMap // of a spheroid, whose coordinates are ρ and μ; nil: straight axes
-	nodes *nodes
-	order []int // nodes from the centre outwards
-	rank  []int // by node: its place in order
-	buf   []float64
+	kinds  [3]axisKind
+	radii  [3]float64
+	by     [3]stretch   // of the coordinates
+	ball   *spheroidMap // of a spheroid, whose coordinates are ρ and μ; nil: straight axes
+	shells *confocal    // of a spheroid with ice, whose coordinates are these; nil else
+	nodes  *nodes
+	order  []int // nodes from the centre outwards
+	rank   []int // by node: its place in order
+	buf    []float64
 }
 
 func newBody(of body, nd *nodes) *body {
@@ -73,6 +74,9 @@ func (b *body) node(i int) coord {
 
 // coord turns a place into coordinates, moved into the food if it lies outside.
 func (b *body) coord(p Place) coord {
+	if b.shells != nil {
+		return b.shells.coord(p)
+	}
 	if b.ball != nil {
 		return b.ball.coord(p)
 	}
@@ -92,6 +96,9 @@ func (b *body) coord(p Place) coord {
 
 // place turns coordinates into a place.
 func (b *body) place(x coord) Place {
+	if b.shells != nil {
+		return b.shells.place(x)
+	}
 	if b.ball != nil {
 		return b.ball.place(x)
 	}

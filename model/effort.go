@@ -1,5 +1,7 @@
 package model
 
+import "math"
+
 // effort is how finely a march is made.
 type effort struct {
 	more  float64 // factor on the number of nodes
@@ -12,10 +14,13 @@ type effort struct {
 
 // rougher is the effort of the second march. Where time is of second order the error of a step is of third, so that their sum goes with the
 // tolerance to 2/3. Half the control volumes and six times the tolerance make about four times the error; two polynomials fewer on each half
-// axis make six to twenty times that of the space (as in fewerWorse). Where ice moves three times the tolerance shows as much, twice in more directions than one.
+// axis make six to twenty times that of the space (as in fewerWorse). Where ice moves three times the tolerance shows as much, twice in more directions than one, four
+// times in a spheroid, where the time counts more.
 func (s *solver) rougher(e effort, ran []Span) effort {
 	r := effort{more: e.more, tolK: e.tolK * 6, rough: true, fewer: 0.5, ends: ran}
 	switch {
+	case s.front && s.ball != nil:
+		r.tolK, r.fewer = e.tolK*4, 0.7
 	case s.front && s.used > 1:
 		r.tolK, r.fewer = e.tolK*2, 0.7
 	case s.front:
@@ -62,6 +67,10 @@ func (s *solver) firstEffort() (e effort, worse float64) {
 	e = effort{more: 1, tolK: 6e-3, kept: mostKept}
 	switch {
 	case !s.polynomial():
+		if s.ball != nil { // far from a sphere most of the error is that of the space
+			e.tolK = 0.04 * math.Sqrt(s.radii[0]/s.radii[1])
+			return e, twoWaysWorse
+		}
 		if s.used > 1 {
 			e.tolK = [4]float64{2: 2e-2, 3: 1.2e-1}[s.used]
 			if s.used == 3 {

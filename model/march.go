@@ -52,11 +52,6 @@ func (s *solver) marches() bool {
 
 // march solves the product by marching, with more effort until the estimate of the error meets its goal or no more tries are left.
 func (s *solver) march() (*History, error) {
-	if s.front && s.product.Shape == Spheroid {
-		s.refused.Add(cell.Error{At: s.product.At, Field: "Shape", Typed: Spheroid.Name, Msg: "the food could freeze or melt here, and a front of ice in a spheroid cannot be calculated",
-			Hint: "take a long cylinder of the spheroid's diameter, which is slower, or judge a probe record"})
-		return nil, s.refused
-	}
 	e, worse := s.firstEffort()
 	if s.options.Rough {
 		return s.marchRough(e)

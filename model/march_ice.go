@@ -105,10 +105,10 @@ func (v *iceVolumes) end(a *spaceAxis, i, at, stride int, u, out []float64) {
 	}
 	out[at] += a.k[i*a.n+j] * d
 	switch {
-	case i > 0 || a.kind == planeFull:
+	case i > 0 && a.face[1] > 0 || a.kind == planeFull:
 		v.near[at] += d * d / 16
 		v.shift[at] += d / 8
-	case a.kind == radial:
+	case i > 0 || a.kind == radial: // a pole is a centre too
 		v.near[at] += d * d / 64
 		v.shift[at] += d / 8
 	default:
@@ -124,6 +124,19 @@ func (v *iceVolumes) read(h, u []float64) {
 	}
 }
 
+// shiftAt is the shift of node i that counts at about u.
+func (v *iceVolumes) shiftAt(i int, u float64) float64 {
+	near2, shift := v.near[i], v.shift[i]
+	if shift != 0 {
+		if far := (u + shift) * (u + shift); far >= 4*near2 {
+			shift = 0
+		} else if far > near2 {
+			shift *= 2 - math.Sqrt(far/near2)
+		}
+	}
+	return shift
+}
+
 // evenly is how far from the freezing point, by its spread, a frozen volume is so even that the first term of a series does.
 const evenly = 0.15
 
@@ -131,14 +144,7 @@ const evenly = 0.15
 // front is about: elsewhere the node stands for its volume as in any finite volumes.
 func (v *iceVolumes) invert(h, guess float64, i int) (u, slope float64) {
 	l := v.law
-	near2, shift := v.near[i], v.shift[i]
-	if shift != 0 {
-		if far := (guess + shift) * (guess + shift); far >= 4*near2 {
-			shift = 0
-		} else if far > near2 {
-			shift *= 2 - math.Sqrt(far/near2)
-		}
-	}
+	near2, shift := v.near[i], v.shiftAt(i, guess)
 	r, x, per := l.row(h)
 	if x > 1 {
 		_, u, _, slope = l.at(h)

@@ -10,6 +10,8 @@ func (s *solver) newMarched(e effort) *marched {
 		f.track.data = s.tmp.rough
 	}
 	switch {
+	case s.product.Shape == Spheroid && s.front:
+		s.layShells(f, laws[0], e)
 	case s.product.Shape == Spheroid:
 		s.layRound(f, laws[0], e)
 	case s.used > 1 || s.polynomial():
