@@ -20,6 +20,7 @@ var order = map[string]struct{ ours, others string }{
 	"model":                  {"model/cell", "gonum.org/v1/gonum"},
 	"model/food":             {"model", "gonum.org/v1/gonum"},
 	"model/verify":           {"model model/food", ""},
+	"model/fit":              {"model", "gonum.org/v1/gonum"},
 	"rules":                  {"model model/cell", "gonum.org/v1/gonum"},
 	"rules/codes":            {"rules model model/cell", "gonum.org/v1/gonum"},
 	"report":                 {"model model/cell model/unit rules", "github.com/jung-kurt/gofpdf gonum.org/v1/plot github.com/xuri/excelize codeberg.org/go-fonts/dejavu golang.org/x/text golang.org/x/image"},
