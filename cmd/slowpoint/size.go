@@ -16,8 +16,11 @@ import (
 	"slowpoint/report"
 )
 
-// nominalBasis says what is judged in a search as long as no spread is given.
-const nominalBasis = "Judged at the values of the plan, with the error of the calculation counted against it; how far pieces, air and food stray from them is not counted."
+// What is judged in a search, in words: of a product with rows in the sheet Spread, and of one without.
+const (
+	spreadBasis  = "Judged at the unfavourable ends of what the sheet Spread lets vary, each limit at its own, with the error of the calculation counted against it."
+	nominalBasis = "Judged at the values of the plan, with the error of the calculation counted against it; how far pieces, air and food stray from them is not counted."
+)
 
 func sizeCommand(files *shelf) *cobra.Command {
 	var o sizeOptions
@@ -145,7 +148,11 @@ func (r *runner) sizes(ctx context.Context, o *sizeOptions) (found []*report.Siz
 					faults[i] = fmt.Errorf("fault of the program at product %s: %v; please report it with the plan", p.Name, fault)
 				}
 			}()
-			out[i] = r.size(p, d, r.nominal, nominalBasis, within)
+			basis := nominalBasis
+			if len(p.Spreads) > 0 {
+				basis = spreadBasis
+			}
+			out[i] = r.size(p, d, r.findings, basis, within)
 		})
 	}
 	working.Wait()

@@ -22,8 +22,8 @@ const (
 // judgement gives the findings on a product with its steps; a search knows nothing else of how they come about.
 type judgement func(p *workbook.Product) ([]rules.Finding, error)
 
-// nominal judges at the values of the plan, each as it stands there.
-func (r *runner) nominal(p *workbook.Product) ([]rules.Finding, error) {
+// findings judges at the values of the plan, or at the unfavourable ends of those that vary.
+func (r *runner) findings(p *workbook.Product) ([]rules.Finding, error) {
 	d, err := r.judged(p)
 	if es := (cell.Errors)(nil); errors.As(err, &es) {
 		for i, e := range es {

@@ -89,7 +89,7 @@ func (r *runner) search1(t *testing.T, o sizeOptions) *report.Sizing {
 	if err != nil {
 		t.Fatal(err)
 	}
-	return r.size(p, d, r.nominal, nominalBasis, 1)
+	return r.size(p, d, r.findings, nominalBasis, 1)
 }
 
 // What is found is the exact value rounded to the safe side by the resolution: where the series, turned round, has the limit met just so.
@@ -317,7 +317,7 @@ func BenchmarkSize(b *testing.B) {
 		b.Fatal(err)
 	}
 	for b.Loop() {
-		if s := r.size(p, d, r.nominal, nominalBasis, 1); s.Answer == nil || s.Next == nil {
+		if s := r.size(p, d, r.findings, nominalBasis, 1); s.Answer == nil || s.Next == nil {
 			b.Fatal("no answer")
 		}
 	}

@@ -176,6 +176,12 @@ func MeasuredCases() []MeasuredCase {
 	add(c, "70 to 10", 5.1, m.from(70, 10))
 	add(c, "50 to 10", 4.4, m.from(50, 10))
 
+	c.What = "rolled beef forequarter 110 mm, 2.7 kg, in air of 0 °C at 1.2 m/s, as a long cylinder with a typed film"
+	c.Taken = "film of 16.5 W/(m²·K): 11.7 by the correlation of Churchill and Bernstein (1977) at 1.2 m/s and 4.8 of radiation, both for walls as cold as the air; " + likeBeef + "; " + even
+	m = timed(pieceOf(beef, model.Cylinder, model.Size{DiameterM: 0.11}, 75), step("chill", long, exposure(16.5, 0)))
+	add(c, "70 to 10", 5.1, m.from(70, 10))
+	add(c, "50 to 10", 4.4, m.from(50, 10))
+
 	c = MeasuredCase{ID: "C03", What: "beef 50 mm thick, 0.94 kg, in water of 0 °C, as a brick", Source: burfoot, Least: 1, Most: inf,
 		Taken: "sides of 134 mm from mass; the program's own film of a water bath; " + likeBeef + "; " + even}
 	m = timed(pieceOf(beef, model.Brick, cut, 75), step("chill", long, bath(0)))
