@@ -23,6 +23,7 @@ import (
 	"slowpoint/model/verify"
 	"slowpoint/report"
 	"slowpoint/rules"
+	judging "slowpoint/rules/known"
 )
 
 var rewrite = flag.Bool("rewrite", false, "write what the program makes into README.md and the files of the examples")
@@ -285,7 +286,7 @@ func refusedList() string {
 func knownTable() string {
 	var rows [][]string
 	n := map[string]int{}
-	cases := append(verify.Cases(), verify.LongCases()...)
+	cases := slices.Concat(verify.Cases(), verify.LongCases(), judging.Cases())
 	for i := range cases {
 		n[cases[i].Area]++
 	}

@@ -12,6 +12,7 @@ import (
 
 	"slowpoint/model/verify"
 	"slowpoint/report"
+	judging "slowpoint/rules/known"
 )
 
 func verifyCommand() *cobra.Command {
@@ -107,7 +108,7 @@ type knownCase struct {
 }
 
 // known solves every case with a known answer that a report shows.
-func known() []knownCase { return solved(verify.Cases()) }
+func known() []knownCase { return solved(slices.Concat(verify.Cases(), judging.Cases())) }
 
 func solved(cases []verify.Case) []knownCase {
 	var out []knownCase

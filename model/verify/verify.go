@@ -34,6 +34,7 @@ const (
 	Properties = "properties"
 	Practice   = "common practice"
 	Measured   = "measured"
+	Judging    = "limits" // in rules/known, which this package does not import
 )
 
 // Areas tells what each area is held to.
@@ -54,6 +55,7 @@ var Areas = []struct{ Name, Help string }{
 	{Properties, "properties from composition, against arithmetic on the published polynomials"},
 	{Practice, "what every kitchen knows, with a wide allowance"},
 	{Measured, "measured cooling, which no calculation meets better than food varies"},
+	{Judging, "lethality of given courses against closed forms, and rows of published tables of time and temperature"},
 }
 
 // Result is what this program gives for a case.
