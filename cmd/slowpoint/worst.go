@@ -3,6 +3,7 @@ package main
 import (
 	"errors"
 	"fmt"
+	"math"
 	"runtime"
 	"slices"
 	"strings"
@@ -283,7 +284,7 @@ func (r *runner) worst(p *workbook.Product, out *report.Product, typed []rules.F
 	runs := map[string]*prediction{}
 	for k, c := range worst {
 		f := s.at(c)[k]
-		w := report.WorstCase{Limit: f.Limit, At: c, Ends: c.words(p), Nominal: typed[k], Drivers: s.drivers(k)}
+		w := report.WorstCase{Limit: f.Limit, At: c, Ends: s.telling(k, c).words(p), Nominal: typed[k], Drivers: s.drivers(k)}
 		if !c.nominal() {
 			if runs[c.key()] == nil {
 				q := p.Varied(c.places())
@@ -305,6 +306,38 @@ func (r *runner) worst(p *workbook.Product, out *report.Product, typed []rules.F
 	}
 	out.Judgement = rules.Conclude(findings, r.plan.Groups)
 	return nil
+}
+
+// An end is told if leaving it moves the margin by this much, or the verdict.
+const (
+	toldK = 0.005
+	toldS = 1.0
+)
+
+// telling is the corner of a limit with the ends that hardly matter left as typed, such as a cook's oven for a limit on chilling. If none of
+// them matters it is the corner itself.
+func (s *search) telling(k int, c corner) corner {
+	at := &s.at(c)[k]
+	apart := func(a, b *float64, least float64) bool {
+		if a == nil || b == nil {
+			return (a == nil) != (b == nil)
+		}
+		return math.Abs(*a-*b) >= least
+	}
+	out := c
+	for i := range c {
+		fs := s.at(c.with(i, 0))
+		if fs == nil {
+			continue
+		}
+		if f := &fs[k]; f.Verdict == at.Verdict && !apart(f.MarginK, at.MarginK, toldK) && !apart(f.MarginS, at.MarginS, toldS) {
+			out = out.with(i, 0)
+		}
+	}
+	if out.nominal() {
+		return c
+	}
+	return out
 }
 
 // known judges each limit at the corner that was found for it before, or as typed where that is worse.
