@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"math"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -120,5 +121,13 @@ func count(n int, noun string) string {
 	return fmt.Sprintf("%d %ss", n, noun)
 }
 
-// minutes writes a duration.
-func minutes(s float64) string { return fmt.Sprintf("%.4g min", s/60) }
+// minutes writes a duration in minutes, from ten hours on in hours and minutes.
+func minutes(s float64) string {
+	if m := math.Round(s / 60); m >= 600 {
+		if rest := math.Mod(m, 60); rest > 0 {
+			return fmt.Sprintf("%.0f h %02.0f min", (m-rest)/60, rest)
+		}
+		return fmt.Sprintf("%.0f h", m/60)
+	}
+	return fmt.Sprintf("%.4g min", s/60)
+}
