@@ -161,7 +161,13 @@ func (v *view) coolOpen(o outcome, q path, w window, t tilt) outcome {
 		if !l.within(ran, *l.TimeS) {
 			up = -1
 		}
-		o.holes = holes{"value": lasting(ran, up), "start": l.startWords(), "stage": v.stageNames()}
+		still := "still"
+		for i, c := range q.c { // it was down, and did not stay there
+			if q.t[i] > o.start && l.coldSide(*l.ToC-t.errK-t.ownK).holds(c) {
+				still = "again"
+			}
+		}
+		o.holes = holes{"value": lasting(ran, up), "start": l.startWords(), "stage": v.stageNames(), "still": still}
 	}
 	switch {
 	case !l.within(ran, *l.TimeS):
@@ -173,6 +179,9 @@ func (v *view) coolOpen(o outcome, q path, w window, t tilt) outcome {
 		if !w.last {
 			o.word = "cool cut"
 		}
+	}
+	if t == (tilt{}) {
+		v.rises(&o, q, o.start, w.b)
 	}
 	return o
 }

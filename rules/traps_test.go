@@ -531,3 +531,25 @@ func TestMedium(t *testing.T) {
 		t.Errorf("%v, %v: %s", got.Verdict, *got.Value, got.Why)
 	}
 }
+
+// TestCoolAgain says of food that was down and is above To at the end that it rose; a display after the store is common practice.
+func TestCoolAgain(t *testing.T) {
+	l := Limit{Kind: CoolWithin, FromC: c(60), ToC: c(5), TimeS: min_(360), Clock: crossing}
+	for _, x := range []struct {
+		name, spans, course string
+		want                Verdict
+		why, note           string
+	}{
+		{"down, then warm again", "cook 0-60, cool 60-400, hold cold 400-800", "0:5 60:80 80:60 300:4 400:4 500:7 800:7", NotMet, "was again above 5 °C after 720 min", "Rose above 5 °C again at 7 h 13 min"},
+		{"never down", "cook 0-60, cool 60-400, hold cold 400-800", "0:5 60:80 80:60 300:9 800:7", NotMet, "was still above 5 °C after 720 min", ""},
+		{"warm again, and time left", "cook 0-60, cool 60-300", "0:5 60:80 80:60 200:4 300:7", CannotTell, "was again above 5 °C when the history ended", "Rose above 5 °C again"},
+	} {
+		t.Run(x.name, func(t *testing.T) {
+			got := one(t, l, record(t, x.spans, x.course))
+			notes := strings.Join(got.Notes, " ")
+			if got.Verdict != x.want || !strings.Contains(got.Why, x.why) || !strings.Contains(notes, x.note) || x.note == "" && notes != "" {
+				t.Errorf("%v: %s Notes: %s", got.Verdict, got.Why, notes)
+			}
+		})
+	}
+}
