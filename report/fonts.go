@@ -25,10 +25,20 @@ const family = "dejavu"
 type typefaces struct {
 	width   [2][65536]int16 // thousandths of the type size, regular and bold; -1: no glyph
 	measure text.Handler
+	other   []byte       // a font of the user's for what DejaVu Sans lacks; nil: none
+	by      *[65536]bool // the characters that it prints; nil: none
 }
 
-// faces reads the fonts once.
-var faces = sync.OnceValue(func() *typefaces {
+// faces are the fonts that the documents are written with: DejaVu Sans, alone or with the font in use.
+func faces() *typefaces {
+	if f := inUse.Load(); f != nil {
+		return f.faces
+	}
+	return dejavu()
+}
+
+// dejavu reads the fonts once.
+var dejavu = sync.OnceValue(func() *typefaces {
 	t := &typefaces{}
 	var all font.Collection
 	for i, ttf := range [][]byte{dejavusans.TTF, dejavusansbold.TTF} {
@@ -39,13 +49,14 @@ var faces = sync.OnceValue(func() *typefaces {
 		widths(&t.width[i], f)
 		all = append(all, font.Face{Font: chartFont(0, i == 1), Face: f})
 	}
-	t.measure = &measure{Plain: text.Plain{Fonts: font.NewCache(all)}, known: map[boxed]box3{}}
+	t.measure = &measure{Plain: text.Plain{Fonts: font.NewCache(all)}, faces: t, known: map[boxed]box3{}}
 	return t
 })
 
 // measure keeps the sizes of words, for the charts of a plan have nearly the same ones.
 type measure struct {
 	text.Plain
+	faces *typefaces
 	lock  sync.Mutex
 	known map[boxed]box3
 }
@@ -64,7 +75,15 @@ func (m *measure) Box(words string, f font.Font) (width, height, depth font.Leng
 	b, ok := m.known[boxed{words, f}]
 	m.lock.Unlock()
 	if !ok {
-		b[0], b[1], b[2] = m.Plain.Box(words, f)
+		_, b[1], b[2] = m.Plain.Box("", f)
+		m.faces.runs(words, func(run string, other bool) {
+			if other {
+				b[0] += f.Size * font.Length(thousandths(run, &m.faces.width[0])) / 1000
+			} else {
+				w, _, _ := m.Plain.Box(run, f)
+				b[0] += w
+			}
+		})
 		m.lock.Lock()
 		if len(m.known) > 5000 { // of plans without end
 			clear(m.known)
@@ -240,7 +259,7 @@ func capped(s string, width, size float64, lines int) string {
 	return strings.Join(append(all[:lines-1:lines-1], shorten(strings.Join(all[lines-1:], " "), width, size, false)), " ")
 }
 
-// unseen collects characters that the font cannot show.
+// unseen collects characters that no font in use can show.
 type unseen map[rune]bool
 
 // printable tells of most texts that clean has nothing to do: of those in ASCII, in Latin letters below U+0300, where no character
@@ -257,7 +276,7 @@ func (t *typefaces) printable(s string) bool {
 	return true
 }
 
-// clean makes any text printable: composed (NFC), without control characters, and with U+FFFD for what the font lacks.
+// clean makes any text printable: composed (NFC), without control characters, and with U+FFFD for what the fonts lack.
 func (u unseen) clean(s string) string {
 	w := faces()
 	if w.printable(s) {

@@ -56,7 +56,7 @@ func cutOut(bold bool, used blocks) []byte {
 // cut cuts what is always there and whole blocks out of a font.
 func cut(bold bool, used blocks) []byte {
 	k := btoi(bold)
-	w := &faces().width[k]
+	w := &dejavu().width[k]
 	var set strings.Builder
 	for r := ' '; r < 65536; r++ {
 		if w[r] >= 0 && (used[r/128] || always(r)) {

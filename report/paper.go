@@ -1,6 +1,7 @@
 package report
 
 import (
+	"bytes"
 	"fmt"
 	"image/color"
 	"io"
@@ -20,7 +21,8 @@ type paper struct {
 		holds  blocks
 		n      int // how many have been added
 	}
-	now drawn
+	other bool // the font of the user's has been added
+	now   drawn
 }
 
 // drawn is how the next thing on the page would be drawn; the zero value: unknown.
@@ -152,9 +154,18 @@ func (p *paper) text(x, y float64, s string, size float64, bold bool, c color.NR
 	if s == "" {
 		return
 	}
-	p.letters(s, bold, size)
-	p.ground(c)
-	p.pdf.Text(x, y, s)
+	faces().runs(s, func(run string, other bool) {
+		if other {
+			p.otherLetters(size)
+		} else {
+			p.letters(run, bold, size)
+		}
+		p.ground(c)
+		p.pdf.Text(x, y, run)
+		if len(run) < len(s) {
+			x += widthMM(run, size, bold)
+		}
+	})
 }
 
 // letters sets the font in which s is written. A text in other blocks than the ones before it brings a font that holds them too.
@@ -170,6 +181,21 @@ func (p *paper) letters(s string, bold bool, size float64) {
 	if n := &p.now; n.size != size || n.bold != bold || n.family != f.family {
 		n.size, n.bold, n.family = size, bold, f.family
 		p.pdf.SetFont(f.family, weight, size)
+	}
+}
+
+// otherFamily is the name of the user's font in the documents.
+const otherFamily = "other"
+
+// otherLetters sets the font of the user's, which has one weight and is added whole; the library embeds what is written with it.
+func (p *paper) otherLetters(size float64) {
+	if !p.other {
+		p.other = true
+		p.pdf.AddUTF8FontFromBytes(otherFamily, "", bytes.Clone(faces().other)) // the library writes into it
+	}
+	if n := &p.now; n.size != size || n.family != otherFamily {
+		n.size, n.bold, n.family = size, false, otherFamily
+		p.pdf.SetFont(otherFamily, "", size)
 	}
 }
 

@@ -26,11 +26,11 @@ import (
 
 // checkOptions are the flags of check.
 type checkOptions struct {
-	out, every, date, paper string
-	only                    []string
-	onePDF, noPDF           bool
-	samples                 int
-	seed                    uint64
+	out, every, date, paper, font string
+	only                          []string
+	onePDF, noPDF                 bool
+	samples                       int
+	seed                          uint64
 }
 
 func checkCommand(files *shelf) *cobra.Command {
@@ -46,6 +46,7 @@ func checkCommand(files *shelf) *cobra.Command {
 	f.StringArrayVar(&o.only, "only", nil, "calculate this `PRODUCT` only (may be repeated)")
 	f.StringVar(&o.date, "date", "", "`DATE` on the report, as 2026-01-31 (default today)")
 	f.StringVar(&o.paper, "paper", "", "`SIZE` of the pages: A4 or Letter (default: the plan's own, else A4)")
+	f.StringVar(&o.font, "font", "", "TrueType `FILE.ttf` that prints, in the PDFs, the characters that DejaVu Sans lacks, such as Chinese or Japanese ones")
 	f.BoolVar(&o.onePDF, "one-pdf", false, "one PDF with everything instead of one a product")
 	f.BoolVar(&o.noPDF, "no-pdf", false, "write no PDF")
 	f.IntVar(&o.samples, "samples", 0, "with a sheet Spread: judge `N` drawn pieces, 200 say, and tell the share that meets each limit (0 = none)")
@@ -59,6 +60,12 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 	if err != nil {
 		return err
 	}
+	font, err := fontOf(o)
+	if err != nil {
+		return err
+	}
+	report.UseFont(font)
+	defer report.UseFont(nil)
 	if !o.noPDF {
 		plan.Problems = append(plan.Problems, unprinted(plan)...)
 		plan.Problems.Sort(plan.Sheets)
@@ -89,6 +96,54 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 	return r.exit()
 }
 
+// mostFont is the size of the largest font file that is taken, bytes.
+const mostFont = 30 << 20
+
+// fontOf reads the font of --font; nil if there is none.
+func fontOf(o *checkOptions) (*report.Font, error) {
+	if o.font == "" {
+		return nil, nil
+	}
+	if o.noPDF {
+		return nil, &failure{exitInput, errors.New("--font and --no-pdf exclude each other: the font is for the PDFs; leave one out")}
+	}
+	ttf, err := readFont(o.font)
+	var f *report.Font
+	if err == nil {
+		f, err = report.ReadFont(ttf)
+	}
+	if err != nil {
+		return nil, &failure{exitInput, fmt.Errorf("--font %s: %w", o.font, err)}
+	}
+	return f, nil
+}
+
+// readFont reads a font file, if it is not too large.
+func readFont(name string) ([]byte, error) {
+	in, err := os.Open(name)
+	if err != nil {
+		return nil, reason(err)
+	}
+	defer in.Close()
+	ttf, err := io.ReadAll(io.LimitReader(in, mostFont+1))
+	if err != nil {
+		return nil, reason(err)
+	}
+	if len(ttf) > mostFont {
+		return nil, fmt.Errorf("the file is larger than %d MB: take a font of one script, or one cut down to it", mostFont>>20)
+	}
+	return ttf, nil
+}
+
+// reason is an error of a file without the name of the file.
+func reason(err error) error {
+	var p *os.PathError
+	if errors.As(err, &p) {
+		return p.Err
+	}
+	return err
+}
+
 // unprinted warns of the names that the PDF cannot show in full: those of products, steps and limits, and what Plan says.
 func unprinted(plan *workbook.Plan) cell.Errors {
 	var found cell.Errors
@@ -96,7 +151,7 @@ func unprinted(plan *workbook.Plan) cell.Errors {
 		if list := report.Unprinted(name); list != "" {
 			found.Add(plan.Locate(cell.Error{At: at, Level: cell.Warning, Field: field, Typed: name,
 				Msg:  "holds characters that the font of the PDF lacks (" + list + "); it prints \uFFFD for each",
-				Hint: "the screen, report.txt, results.xlsx and results.json keep the name as it is typed; for the PDF add a name in Latin, Greek or Cyrillic letters"}))
+				Hint: "the screen, report.txt, results.xlsx and results.json keep the name as it is typed; for the PDF give a font that has them (check --font FILE.ttf; none prints those above U+FFFF), or add a name in Latin, Greek or Cyrillic letters"}))
 		}
 	}
 	steps := map[cell.Ref]bool{}
