@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -124,6 +125,21 @@ type (
 	}
 )
 
+// asked tells whether a changed input is part of what is asked of a product: of limits, groups and tables what is judged, and what the worst
+// case is made of. A row that is new asks for more, and limits that are gone are told product by product.
+func (in *comparedInput) asked() bool {
+	of := func(cell string) bool {
+		sheet, _, _ := strings.Cut(strings.ReplaceAll(cell, "!", " "), " ")
+		return slices.Contains([]string{"Limits", "Groups", "Tables", "Spread"}, sheet)
+	}
+	if !of(in.Was) && !of(in.Is) || in.What == "new" || in.What == "gone" && strings.HasPrefix(in.Was, "Limits") {
+		return false
+	}
+	return !slices.ContainsFunc([]string{"Hazard", "Status", "Code", "Clause", "Edition", "Issued by", "Note", "Basis"}, func(column string) bool {
+		return in.What == column || strings.HasSuffix(in.What, ": "+column)
+	})
+}
+
 // judgedPlan is a plan with its products as they were judged, by name.
 type judgedPlan struct {
 	plan *workbook.Plan
@@ -184,7 +200,11 @@ func comparePlans(w io.Writer, old, now, date string) (*comparison, *report.Head
 		return nil, nil, &failure{exitInput, err}
 	}
 	for _, ch := range changes {
-		c.Inputs = append(c.Inputs, comparedInput{ch.Product, ch.What, ch.Before, ch.Now, ch.Was, ch.Cell})
+		in := comparedInput{ch.Product, ch.What, ch.Before, ch.Now, ch.Was, ch.Cell}
+		c.Inputs = append(c.Inputs, in)
+		if in.asked() {
+			c.worse("what is asked changed, so that verdicts and margins do not compare: %s: %s %s → %s", in.Of, in.What, in.Old, in.New)
+		}
 	}
 	for i := range b.plan.Products {
 		p := &b.plan.Products[i]

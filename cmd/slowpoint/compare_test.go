@@ -56,6 +56,8 @@ func TestCompare(t *testing.T) {
 		{"limit gone", map[string][2]string{"Limits.csv": {"Hot,hold,all,cook,70,,2,,total\n", ""}}, 1, []string{"limit Hot: gone (Limits row 2 → –)", `limit "Hot" is gone`}},
 		{"limit new and met", map[string][2]string{"Limits.csv": {"Hot,", "Warm,hold,all,cook,60,,2,,total\nHot,"}}, 0, []string{"limit Warm: new (– → Limits row 2)", `"Warm" (must): – → met`}},
 		{"limit new and not met", map[string][2]string{"Limits.csv": {"Hot,", "Boil,hold,all,cook,95,,2,,total\nHot,"}}, 1, []string{`limit "Boil" is new and not met`}},
+		{"limit made advice", map[string][2]string{"Limits.csv": {"Clock starts,Counting\nHot,hold,all,cook,70,,2,,total", "Clock starts,Counting,Level\nHot,hold,all,cook,70,,2,,total,advice"}}, 1, []string{"what is asked changed", "Level"}},
+		{"limit on cooling made longer", map[string][2]string{"Limits.csv": {",,10,240,", ",,10,300,"}}, 1, []string{"what is asked changed", "limit Cold: Time 240 min → 300 min"}},
 		{"product renamed", map[string][2]string{"Products.csv": {"Block,P", "Brick,P"}}, 0, []string{"Brick: new, met", "Block: gone, was met"}},
 		{"product new and not met", map[string][2]string{"Products.csv": {"Block,P", "Big,P,slab,150,Block food,6\nBlock,P"}}, 1, []string{"Big is new and not met"}},
 		{"step gone", map[string][2]string{"Steps.csv": {"P,bath,", "P,kettle,"}}, 1, []string{"kettle has no counterpart"}},

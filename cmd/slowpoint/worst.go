@@ -16,9 +16,13 @@ import (
 	"slowpoint/rules"
 )
 
-// fullSpreads is how many quantities at most are tried at every combination of their ends; of more, the ends that are worse alone make the
-// first corner, and single flips and pairs of them lead on from there.
-const fullSpreads = 4
+// fullSpreads is how many quantities at most are tried at every combination of their ends and the typed value, endSpreads how many at every
+// combination of their ends. Of more, the ends that are worse alone, the corners where everything is slow or fast, and those of the other
+// limits come first; single flips and pairs of them lead on from the worst of these.
+const (
+	fullSpreads = 4
+	endSpreads  = 6
+)
 
 // corner is where each spread of a product stands: −1 at its Minus end, 0 as typed, 1 at its Plus end.
 type corner []int8
@@ -186,6 +190,10 @@ func (s *search) corners() ([]corner, error) {
 			}
 		}
 	}
+	first = append(first, s.physical()...)
+	if n > fullSpreads && n <= endSpreads {
+		first = append(first, s.everyEnd()...)
+	}
 	if err := s.need(first); err != nil {
 		return nil, err
 	}
@@ -206,6 +214,7 @@ func (s *search) corners() ([]corner, error) {
 	if err := s.need(worst); err != nil {
 		return nil, err
 	}
+	first = append(first, worst...) // what is worst for one limit may be for another
 	for k := range worst {
 		for _, c := range first {
 			if rules.Worse(&s.at(c)[k], &s.at(worst[k])[k]) {
@@ -214,6 +223,70 @@ func (s *search) corners() ([]corner, error) {
 		}
 	}
 	return worst, s.climb(worst)
+}
+
+// slowing gives the ends at which heat moves slowly through a food, by quantity: 1 is Plus. Those of temperatures and durations depend on
+// what the steps are for.
+var slowing = map[string]int8{"thickness": 1, "width": 1, "length": 1, "diameter": 1, "film coefficient": -1, "air speed": -1, "conductivity": -1,
+	"specific heat": 1, "density": 1}
+
+// physical are the corners that no single end may lead to, where a step ends at a temperature say, and each end alone leaves the margin as it
+// is: everything slow and cold, or quick and hot, in heating, with everything slow and warm, or quick and cold, afterwards, and durations both ways.
+func (s *search) physical() []corner {
+	var out []corner
+	for _, heating := range []int8{-1, 1} { // cold and slow, hot and quick
+		for _, after := range []int8{-1, 1} { // warm and slow, cold and quick
+			for _, size := range []int8{-1, 1} {
+				for _, time := range []int8{-1, 1} {
+					c := make(corner, len(s.p.Spreads))
+					for i := range c {
+						sp := &s.p.Spreads[i]
+						heats := sp.Step >= 0 && s.p.Steps[sp.Step].Stage != nil && s.p.Steps[sp.Step].Stage.Heats
+						way, known := slowing[sp.Of.Name]
+						switch {
+						case sp.Of.Name == "start temperature":
+							way = heating
+						case sp.Of.Name == "medium temperature" && heats:
+							way = heating
+						case sp.Of.Name == "medium temperature":
+							way = -after
+						case sp.Of.Name == "duration":
+							way = time
+						case known && heats:
+							way *= -heating
+						case known && sp.Step >= 0:
+							way *= -after
+						default:
+							way = size
+							if known && slowing[sp.Of.Name] < 0 {
+								way = -size
+							}
+						}
+						if slices.Contains(s.ends(i, 0), way) {
+							c[i] = way
+						}
+					}
+					out = append(out, c)
+				}
+			}
+		}
+	}
+	return out
+}
+
+// everyEnd are all combinations of ends, each as far as it varies that way.
+func (s *search) everyEnd() []corner {
+	out := []corner{make(corner, len(s.p.Spreads))}
+	for i := range s.p.Spreads {
+		var next []corner
+		for _, c := range out {
+			for _, v := range s.ends(i, 0) {
+				next = append(next, c.with(i, v))
+			}
+		}
+		out = next
+	}
+	return out
 }
 
 // climb moves each limit's corner as long as one flip makes it worse. Where any did, the quantities bear on one another, and pairs of

@@ -6,6 +6,7 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 	"testing"
 
@@ -130,6 +131,63 @@ func TestCornerIsTheWorstOfAllCombinations(t *testing.T) {
 		if f, g := &s.at(best)[k], &s.at(d.Worst[k].At)[k]; rules.Worse(f, g) {
 			t.Errorf("%s: corner %v, worse is %v", f.Limit.Name, d.Worst[k].At, best)
 		}
+	}
+}
+
+// Where a step ends as soon as the slowest place is warm enough, no end alone moves a limit on heating, and all of them together do: the time
+// runs out. The corner is found all the same, with few quantities and with many.
+func TestCornerBehindAStepThatEndsAtATemperature(t *testing.T) {
+	for n := range 16 { // of several sizes, since which end seems worse alone is chance
+		var more []workbook.Spread
+		if n%2 > 0 {
+			more = []workbook.Spread{vary("specific heat", -1, 0.01, 0.01, true), vary("density", -1, 0.01, 0.01, true), vary("medium temperature", 1, 1, 2, false)}
+		}
+		r, p := wall()
+		p.Size.ThicknessM += float64(n/2) * 0.0007
+		until := 76.0
+		p.Steps[0].UntilC, p.Steps[0].DurationS = &until, 4*3600
+		p.Spreads = append([]workbook.Spread{vary("thickness", -1, 0.002, 0.002, false), vary("start temperature", -1, 3, 3, false), vary("medium temperature", 0, 3, 8, false),
+			vary("film coefficient", 0, 0.05, 0.2, true), vary("duration", 0, 60, 0, false)}, more...)
+		r.plan.Limits[0].TimeS = new(float64)
+		zero, longest := make([]float64, len(p.Spreads)), 0.0
+		for i := range zero { // each end alone lets the step reach its temperature in time
+			for _, v := range []float64{-1, 1} {
+				at := slices.Clone(zero)
+				at[i] = v
+				q := p.Varied(at)
+				h, err := model.Solve(q.Product, q.Steps, model.Options{})
+				if err != nil {
+					t.Fatal(err)
+				}
+				longest = max(longest, h.Spans[0].EndS)
+			}
+		}
+		p.Steps[0].DurationS = longest + 61 // a minute is one of the ends
+		slow := []float64{1, -1, -1, -1, -1, 1, 1, 1}[:len(zero)]
+		q := p.Varied(slow)
+		h, err := model.Solve(q.Product, q.Steps, model.Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		want := rules.Find(r.plan.Limits, rules.Subject{Product: p.Name, History: h})[0]
+		d, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if got := d.Judgement.Findings[0]; want.Verdict != rules.NotMet || rules.Worse(&want, &got) {
+			t.Errorf("%g m, %d quantities: %v at %v; with everything slow: %v", p.Size.ThicknessM, len(zero), got.Verdict, d.Worst[0].At, want.Verdict)
+		}
+	}
+}
+
+// The walls of an oven that is colder are colder too.
+func TestWallsGoWithTheAir(t *testing.T) {
+	_, p := wall()
+	walls, rh := 110.0, 20.0
+	p.Steps[0].RadiatingC, p.Steps[0].RH = &walls, &rh
+	p.Spreads = []workbook.Spread{vary("medium temperature", 0, 8, 0, false)}
+	if q := p.Varied([]float64{-1}); *q.Steps[0].RadiatingC != 102 || q.Steps[0].Medium.C[0] != 112 || walls != 110 {
+		t.Errorf("walls %g, air %g", *q.Steps[0].RadiatingC, q.Steps[0].Medium.C[0])
 	}
 }
 

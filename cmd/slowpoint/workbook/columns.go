@@ -334,8 +334,8 @@ var Sheets = []*Sheet{
 	{Name: "Spread", Help: "Least and most of what varies, for the worst case", Columns: []*Column{
 		{Heading: "Applies to", Needed: true, Help: "all, family: NAME, a product, a process, or process/step as Cook-chill/Oven; of rows for one quantity the most specific counts"},
 		{Heading: "Quantity", Needed: true, Choices: spreadNames, Help: "what varies; of a process, its steps vary apart from one another"},
-		{Heading: "Minus", Help: "how far below it may be, with its unit in the cell: 2 mm, 5 %, 3 °C; 0 or blank = not at all"},
-		{Heading: "Plus", Help: "how far above it may be, with its unit in the cell: 2 mm, 5 %, 3 °C; 0 or blank = not at all"},
+		{Heading: "Minus", Help: "how far below it may be, with its unit in the cell: 2 mm, 5 %, 3 °C; 0 = not at all; blank = as a row for more says, else not at all"},
+		{Heading: "Plus", Help: "how far above it may be, with its unit in the cell: 2 mm, 5 %, 3 °C; 0 = not at all; blank = as a row for more says, else not at all"},
 		{Heading: "Basis", Needed: true, Help: "where the figure comes from"},
 	}},
 	{Name: "Records", Help: "Probe and air logs", Refused: "records cannot be read yet", Columns: []*Column{

@@ -155,6 +155,8 @@ var (
 	// what varies
 	spreadUnknown   = saying{"matches no product, family or process{1}", "type all, family: NAME, a product, a process, or process/step as Cook-chill/Oven"}
 	spreadTwoNames  = saying{"is the name of a product and of a family or process too; the product is taken", "write family: NAME for a family"}
+	spreadNotFor    = saying{"does not vary for {1}, which has none", ""}
+	spreadFamilyToo = saying{"is the name of a process and of a family too", "write family: {1} if the family is meant; if the process is, give one of the two another name"}
 	spreadNothing   = saying{"Neither Minus nor Plus says how far the {1} varies", "type how far it may be below or above, such as {2}, or take the row out"}
 	spreadBare      = saying{"has no unit", "type how far the {2} may be off, with a unit in the cell, such as {1}"}
 	spreadPercent   = saying{"is a percentage, and one of a {1} would depend on its scale", "type how far it may be off, such as {2}"}
@@ -164,8 +166,8 @@ var (
 	spreadOfProduct = saying{"names a step, and the {1} is no quantity of a step", "name the process, the product or its family"}
 	spreadLacking   = saying{"is a quantity that {1} does not have", "correct the quantity, or whom the row is for"}
 	spreadTwice     = saying{"varies by row {1} too, which is for as many", "keep one of the rows"}
-	spreadOver      = saying{"is left to row {1} for {2}, which is more specific", ""}
-	spreadWins      = saying{"takes the place of row {1} for {2}, as it is more specific", ""}
+	spreadOver      = saying{"is left to row {1} for {2}, which is more specific; an end that is blank there is taken from here", ""}
+	spreadWins      = saying{"takes the place of row {1} for {2}, as it is more specific; an end that is blank here is taken from there", ""}
 	spreadMany      = saying{"is the row by which {1} quantities of {2} vary; at most {3} are calculated", "keep those that matter, or say of which process/step they are"}
 	spreadTooFar    = saying{"would leave nothing of the {1} of {2}", "type less"}
 	spreadFilm      = saying{"is no percentage, and the program works out the film coefficient of {1}", "type a percentage, such as 25 %"}

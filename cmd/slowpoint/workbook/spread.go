@@ -1,6 +1,7 @@
 package workbook
 
 import (
+	"fmt"
 	"math"
 	"slices"
 	"strconv"
@@ -163,6 +164,10 @@ var Spreads = []*Varies{
 				e.Medium.C = slices.Clone(e.Medium.C)
 				for i := range e.Medium.C {
 					e.Medium.C[i] = by(e.Medium.C[i])
+				}
+				if e.RadiatingC != nil { // the walls go with the air
+					walls := by(*e.RadiatingC)
+					e.RadiatingC = &walls
 				}
 			}
 		}},
@@ -335,14 +340,22 @@ func (r *reader) readSpread() {
 			}
 		}
 		had := false
+		var lacking []string
 		for _, p := range scope.products {
 			if l.Sound() && p.Shape != nil {
-				had = r.hangSpread(l, p, s, scope.step) || had
+				if r.hangSpread(l, p, s, scope.step) {
+					had = true
+				} else {
+					lacking = append(lacking, p.Name)
+				}
 				p.readings = append(p.readings, l.readings)
 			}
 		}
 		if l.Sound() && !had && len(scope.products) > 0 && slices.ContainsFunc(scope.products, func(p *product) bool { return p.Shape != nil && len(p.Steps) > 0 }) {
 			l.Fault("Quantity", s.Of.Name, spreadLacking, r.whoLacks(scope))
+		}
+		if had && len(lacking) > 0 {
+			l.Remark(cell.Note, "Quantity", s.Of.Name, spreadNotFor, someOf(lacking))
 		}
 		for _, p := range scope.products {
 			p.suffer(l.because)
@@ -379,10 +392,14 @@ func (r *reader) spreadScope(l *Line) spreadScope {
 		return spreadScope{products: r.families[Key(family)], rank: 1}
 	case r.byName[Key(typed)] != nil:
 		if r.processes[Key(typed)] != nil || len(r.families[Key(typed)]) > 0 {
-			l.Remark(cell.Note, "Applies to", typed, spreadTwoNames)
+			l.Remark(cell.Warning, "Applies to", typed, spreadTwoNames)
 		}
 		return spreadScope{products: []*product{r.byName[Key(typed)]}, rank: 3}
 	case r.processes[Key(typed)] != nil:
+		if len(r.families[Key(typed)]) > 0 {
+			l.Fault("Applies to", typed, spreadFamilyToo, r.processes[Key(typed)].name)
+			return spreadScope{products: slices.Concat(r.users[Key(typed)], r.families[Key(typed)]), rank: 2}
+		}
 		return spreadScope{products: r.users[Key(typed)], rank: 2}
 	case len(r.families[Key(typed)]) > 0:
 		return spreadScope{products: r.families[Key(typed)], rank: 1}
@@ -413,7 +430,7 @@ func (l *Line) deviation(heading string, v *Varies) Deviation {
 	e := l.Entry(heading)
 	var d Deviation
 	if e.Kind == Blank {
-		l.note(heading, "", "0", "blank: it does not vary this way")
+		l.note(heading, "", "0", "blank: it does not vary this way, unless a row for more says so")
 		return d
 	}
 	if l.broken(heading, e) {
@@ -480,6 +497,25 @@ func (l *Line) deviation(heading string, v *Varies) Deviation {
 }
 
 // hangSpread gives a spread to a product, for each step that has it, and tells whether it has it at all.
+// someOf names the first of a list, and how many more there are.
+func someOf(names []string) string {
+	const most = 5
+	if len(names) > most {
+		return fmt.Sprintf("%s and %d more", strings.Join(names[:most], ", "), len(names)-most)
+	}
+	return strings.Join(names, ", ")
+}
+
+// inherit takes a blank end over from a less specific row: only 0 says that a quantity does not vary that way.
+func (s *Spread) inherit(from *Spread) {
+	if s.Minus.Typed == "" {
+		s.Minus = from.Minus
+	}
+	if s.Plus.Typed == "" {
+		s.Plus = from.Plus
+	}
+}
+
 func (r *reader) hangSpread(l *Line, p *product, s Spread, stepKey string) (had bool) {
 	add := func(step int, name string) {
 		had = true
@@ -494,9 +530,12 @@ func (r *reader) hangSpread(l *Line, p *product, s Spread, stepKey string) (had 
 				l.Fault("Quantity", s.Of.Name, spreadTwice, strconv.Itoa(o.At.Row))
 			case o.rank > s.rank:
 				l.Remark(cell.Note, "Quantity", s.Of.Name, spreadOver, strconv.Itoa(o.At.Row), p.Name)
+				o.inherit(&s)
 			default:
 				l.Remark(cell.Note, "Quantity", s.Of.Name, spreadWins, strconv.Itoa(o.At.Row), p.Name)
-				*o = s
+				t := s
+				t.inherit(o)
+				*o = t
 			}
 			return
 		}
