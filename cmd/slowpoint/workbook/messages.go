@@ -164,7 +164,7 @@ var (
 	spreadToNothing = saying{"would leave nothing of the {1}", "type less than 100 %"}
 	spreadTooMuch   = saying{"is more than {1} %", "check the number"}
 	spreadOfProduct = saying{"names a step, and the {1} is no quantity of a step", "name the process, the product or its family"}
-	spreadLacking   = saying{"is a quantity that {1} does not have", "correct the quantity, or whom the row is for"}
+	spreadLacking   = saying{"is a quantity that {1} lacks", "correct the quantity, or whom the row is for"}
 	spreadTwice     = saying{"varies by row {1} too, which is for as many", "keep one of the rows"}
 	spreadOver      = saying{"is left to row {1} for {2}, which is more specific; an end that is blank there is taken from here", ""}
 	spreadWins      = saying{"takes the place of row {1} for {2}, as it is more specific; an end that is blank here is taken from there", ""}
@@ -172,7 +172,7 @@ var (
 	spreadTooFar    = saying{"would leave nothing of the {1} of {2}", "type less"}
 	spreadFilm      = saying{"is no percentage, and the program works out the film coefficient of {1}", "type a percentage, such as 25 %"}
 	spreadCourse    = saying{"makes {1} longer than its course", "add rows to the course up to the end of the longest step"}
-	spreadEnd       = saying{"leads, for {1}, to what cannot be calculated ({2}): {3}", "type less, or change what it is about"}
+	spreadEnd       = saying{"as {1} leads, for {2}, to what cannot be calculated: {3}", "type less; a step may have a row of its own, as PROCESS/STEP"}
 
 	// limits
 	limitNeeds     = saying{"{1} is missing: the rule {2} needs it", "fill it"}

@@ -374,7 +374,7 @@ func (r *reader) whoLacks(s spreadScope) string {
 	case len(s.products) == 1 && s.products[0].Shape != nil:
 		return s.products[0].Name + ", a product of the shape " + s.products[0].Shape.Name + ","
 	}
-	return "any of the products that the row is for"
+	return "every product that the row is for"
 }
 
 // spreadScope finds whom a row is for. Where nobody knows, every product suffers: a spread that is left out would be taken for met.
@@ -506,6 +506,16 @@ func someOf(names []string) string {
 	return strings.Join(names, ", ")
 }
 
+// rounded writes the number that a text begins with in at most six digits.
+func rounded(typed string) string {
+	number, rest, _ := strings.Cut(typed, " ")
+	x, err := strconv.ParseFloat(number, 64)
+	if err != nil {
+		return typed
+	}
+	return strings.TrimSpace(strconv.FormatFloat(x, 'g', 6, 64) + " " + rest)
+}
+
 // inherit takes a blank end over from a less specific row: only 0 says that a quantity does not vary that way.
 func (s *Spread) inherit(from *Spread) {
 	if s.Minus.Typed == "" {
@@ -610,7 +620,7 @@ func (r *reader) checkSpreads(t *table, p *product) {
 			q := p.Varied(at)
 			for _, e := range model.Check(q.Product, q.Steps) {
 				if e.Level == cell.Fault && !before[e.Msg] {
-					l.Fault(end.heading, end.d.Typed, spreadEnd, p.Name, e.Typed, e.Msg)
+					l.Fault(end.heading, end.d.Typed, spreadEnd, s.Named(), p.Name, strings.TrimPrefix(rounded(e.Typed)+": "+e.Msg, ": "))
 					break
 				}
 			}
