@@ -47,7 +47,7 @@ func TestCases(t *testing.T) {
 		})
 	}
 	for name, n := range areas {
-		if n == 0 {
+		if n == 0 && name != Judging { // its cases are in rules/known
 			t.Errorf("no case in area %q", name)
 		}
 	}
