@@ -1,0 +1,16 @@
+package model
+
+// Recording is what a logger measured at one place of a food, with what its readings leave open.
+type Recording struct {
+	Point
+	Surface bool
+	Spans   []Span    // the steps of the chain that it covers, on the clock of TimesS
+	TimesS  []float64 // s from the start of the chain, rising strictly
+	C       []float64 // °C, corrected, as long as TimesS
+	ErrorK  float64   // accuracy of the instrument and half its resolution, K
+	Gaps    []int     // i: readings are lacking between i and i+1, beyond the usual time between two
+	Doubted []int     // readings that jump faster than their neighbours allow
+	LowC    float64   // what the place cannot have fallen below in a gap, and cannot have risen above, °C: the range of the medium, or NaN
+	HighC   float64   // where none is known; then that of the whole record
+	Medium  *Trace    // of the surroundings; nil if not recorded
+}
