@@ -90,7 +90,7 @@ func TestReadmeColumns(t *testing.T) {
 	text, _, _ = strings.Cut(text, "### Shapes")
 	for _, s := range workbook.Sheets {
 		for _, c := range s.Columns {
-			if c.Help == "" && s.Refused == "" && !strings.Contains(text, "*"+c.Heading+"*") {
+			if c.Help == "" && !strings.Contains(text, "*"+c.Heading+"*") {
 				t.Errorf("README.md says nothing about the column %s of %s", c.Heading, s.Name)
 			}
 		}
@@ -154,9 +154,6 @@ func sheetTables() string {
 	var b strings.Builder
 	for _, s := range workbook.Sheets {
 		fmt.Fprintf(&b, "\n#### %s\n\n%s.", s.Name, s.Help)
-		if s.Refused != "" {
-			fmt.Fprintf(&b, " Not yet: %s, so a row here is an error for the products that it concerns.", s.Refused)
-		}
 		b.WriteString("\n\n")
 		var rows [][]string
 		for _, c := range s.Columns {
@@ -201,10 +198,8 @@ func accepts(s *workbook.Sheet, c *workbook.Column) string {
 		return "words, such as " + code(c.Choices)
 	case len(c.Choices) > 0:
 		return code(c.Choices)
-	case c.Quantity == nil && s.Refused == "":
-		return "words"
 	case c.Quantity == nil:
-		return ""
+		return "words"
 	}
 	words := map[workbook.Least]string{workbook.Any: "a number", workbook.NotNegative: "a number, 0 or more", workbook.Positive: "a number above 0",
 		workbook.Share: "0 to 100 %", workbook.UpToOne: "a number above 0, at most 1"}
@@ -273,11 +268,6 @@ func refusedList() string {
 	for _, s := range model.Shapes {
 		if s.Refused != "" {
 			fmt.Fprintf(&b, "- shape `%s`: %s.\n", s.Name, s.Refused)
-		}
-	}
-	for _, s := range workbook.Sheets {
-		if s.Refused != "" {
-			fmt.Fprintf(&b, "- sheet %s: %s.\n", s.Name, s.Refused)
 		}
 	}
 	return b.String()

@@ -76,9 +76,9 @@ func planRows() []map[string]string {
 
 // blanks writes sheets of the blank workbook into a file.
 type blanks struct {
-	f                          *excelize.File
-	help, needed, may, refused int // styles of the help line and of headings
-	words, verbatim, figure    int // styles of cells: verbatim keeps 2-10 and 1.10 as they were typed
+	f                       *excelize.File
+	help, needed, may       int // styles of the help line and of headings
+	words, verbatim, figure int // styles of cells: verbatim keeps 2-10 and 1.10 as they were typed
 }
 
 // blankLook is the look of a cell.
@@ -100,7 +100,6 @@ func newBlank(f *excelize.File) (*blanks, error) {
 		{&k.help, blankLook{ink: "595959", italic: true}},
 		{&k.needed, blankLook{fill: "1F4E79", ink: "FFFFFF", bold: true, centred: true, ruled: true}},
 		{&k.may, blankLook{fill: "D9E5F1", ink: "1F3247", bold: true, centred: true, ruled: true}},
-		{&k.refused, blankLook{fill: "D9D9D9", ink: "595959", bold: true, centred: true, ruled: true}},
 		{&k.words, blankLook{ink: "000000", ruled: true}},
 		{&k.verbatim, blankLook{ink: "000000", ruled: true, verbatim: true}},
 		{&k.figure, blankLook{ink: "000000", ruled: true}},
@@ -156,11 +155,6 @@ func (k *blanks) sheet(s *Sheet, rows []map[string]string) error {
 	if err := f.SetRowHeight(s.Name, headRow, 44); err != nil {
 		return err
 	}
-	if s.Refused != "" {
-		if err := k.note(s.Name, "A1", "Not yet", s.Refused+". Leave the rows of this sheet blank."); err != nil {
-			return err
-		}
-	}
 	last := firstRow + max(ruledRows, len(rows)+5) - 1
 	total := 0.0
 	for i, c := range s.Columns {
@@ -186,10 +180,7 @@ func (k *blanks) column(s *Sheet, n int, c *Column, rows []map[string]string, la
 	f, name := k.f, cell.ColumnName(n)
 	head := name + strconv.Itoa(headRow)
 	look, body := k.may, k.words
-	switch {
-	case s.Refused != "":
-		look = k.refused
-	case c.Needed:
+	if c.Needed {
 		look = k.needed
 	}
 	if c.Quantity != nil {
@@ -435,9 +426,10 @@ func (k *blanks) page(s *Sheet, total float64) error {
 	yes, landscape, paper := true, "landscape", 9 // 9 = A4
 	across, down := int(math.Ceil(total/pageChars)), 0
 	colour := "1F4E79"
-	if s.Refused != "" {
+	switch {
+	case len(s.Columns) == 0: // it tells of the import
 		colour = "A6A6A6"
-	} else if !slices.Contains([]string{"Plan", "Products", "Steps", "Limits"}, s.Name) {
+	case !slices.Contains([]string{"Plan", "Products", "Steps", "Limits"}, s.Name):
 		colour = "9DC3E6"
 	}
 	top := "B" + strconv.Itoa(firstRow)

@@ -13,7 +13,6 @@ type Sheet struct {
 	Name    string
 	Help    string // one line above the table in the blank workbook
 	Columns []*Column
-	Refused string // for a sheet that is recognised and cannot be used yet: why; "" if it is read
 
 	byKey     map[string]*Column // columns by the key of their headings, made when first needed
 	byKeyOnce sync.Once
@@ -338,11 +337,22 @@ var Sheets = []*Sheet{
 		{Heading: "Plus", Help: "how far above it may be, with its unit in the cell: 2 mm, 5 %, 3 °C; 0 = not at all; blank = as a row for more says, else not at all"},
 		{Heading: "Basis", Needed: true, Help: "where the figure comes from"},
 	}},
-	{Name: "Records", Help: "Probe and air logs", Refused: "records cannot be read yet", Columns: []*Column{
-		{Heading: "Record", Needed: true}, {Heading: "Product"}, {Heading: "Process"}, {Heading: "File", Needed: true}, {Heading: "Sheet"},
-		{Heading: "Time column", Needed: true}, {Heading: "Temperature column", Needed: true}, {Heading: "What it measured", Needed: true},
-		{Heading: "Starts at"}, {Heading: "Date order"}, {Heading: "Time zone"}, {Heading: "Missing words"}, {Heading: "Sensor"}, {Heading: "Calibrated on"},
-		{Heading: "Correction", Quantity: &unit.Difference, Unit: "°C difference"}, {Heading: "Accuracy", Quantity: &unit.Difference, Unit: "°C difference", Least: NotNegative}, {Heading: "Note"},
+	{Name: "Records", Help: "Files of probe and air loggers, which are judged by the same limits beside the prediction", Columns: []*Column{
+		{Heading: "Record", Needed: true, Help: "a name for it, such as Trial 3 core"},
+		{Heading: "Product", Help: "a product of the sheet Products; blank for the air of a process"},
+		{Heading: "Process", Help: "whose air or water was logged, where that is for all its products"},
+		{Heading: "File", Needed: true, Help: "the logger's file (.csv, .txt or .xlsx), in the folder of the plan or below it"},
+		{Heading: "Sheet", Help: "of a workbook with several sheets: which one"},
+		{Heading: "Time column", Needed: true, Help: "its heading in the file, or its letter; a date and a clock as Date + Time; a unit that the file does not say in brackets: Elapsed (min)"},
+		{Heading: "Temperature column", Needed: true, Help: "its heading in the file, or its letter; a unit that the file does not say in brackets: Probe 1 (°C)"},
+		{Heading: "What it measured", Needed: true, Choices: []string{"slowest point", "centre", "surface", "other place"}, Free: true, Help: "slowest point, centre, surface, medium of STEP, a name of the sheet Points, or other place"},
+		{Heading: "Starts at", Help: "the step of the first reading, or when steps began: Oven 09:12; Chill 11:20. Blank: the first step, at the first reading"},
+		{Heading: "Date order", Choices: planChoices["Date order"], Help: "of the file's dates, where they fit two orders"},
+		{Heading: "Time zone", Help: "of the file's clock, as UTC+01:00; blank: not known"},
+		{Heading: "Missing words", Help: "further words of this logger for a reading that is missing, divided by commas"},
+		{Heading: "Sensor", Help: "which instrument"}, {Heading: "Calibrated on", Help: "when, as YYYY-MM-DD"},
+		{Heading: "Correction", Quantity: &unit.Difference, Unit: "°C difference", Help: "is added to every reading"},
+		{Heading: "Accuracy", Quantity: &unit.Difference, Unit: "°C difference", Least: NotNegative, Help: "of the instrument, either way; blank: not known, and a warning"}, {Heading: "Note"},
 	}},
 }
 

@@ -95,7 +95,7 @@ func (l *Looks) Sheet(s *Sheet, columns []*Column, rows int, wide float64) error
 
 // List sets how a sheet that tells of the import is shown and printed. It comes before its rows are written.
 func (l *Looks) List(name string) error {
-	return l.k.page(&Sheet{Name: name, Refused: "grey"}, pageChars)
+	return l.k.page(&Sheet{Name: name}, pageChars)
 }
 
 // Width fits the heading and the choices of a column, and a text of so many characters, within reason.

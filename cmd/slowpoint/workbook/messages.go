@@ -16,7 +16,6 @@ var (
 	unknownSheet  = saying{"is not a sheet of a plan and is ignored", "{1}"}
 	hiddenSheet   = saying{"is a hidden sheet and is ignored", "unhide it if it belongs to the plan"}
 	doubledSheet  = saying{"is there twice ({1} and {2})", "keep one of them"}
-	sheetNotYet   = saying{"is filled, but {1}", "take the rows out; the products that they concern are not calculated"}
 	noHeader      = saying{"The sheet has no row with all the needed headings: {1} {2} missing", "give every table a heading row; slowpoint blank writes one"}
 	emptySheet    = saying{"The sheet is empty", "fill it or take it out"}
 	aboveHeader   = saying{"{1} above the headings {2} ignored", ""}
@@ -175,28 +174,38 @@ var (
 	spreadEnd       = saying{"as {1} leads, for {2}, to what cannot be calculated: {3}", "type less; a step may have a row of its own, as PROCESS/STEP"}
 
 	// limits
-	limitNeeds     = saying{"{1} is missing: the rule {2} needs it", "fill it"}
-	limitUnused    = saying{"is given, but the rule {1} does not use {2}", "clear the cell or choose another rule"}
-	stageUnknown   = saying{"is not a stage{1}", "choose from: {2}; join several by +, as cook + rest"}
-	stageNowhere   = saying{"is a stage of no step of the products that the limit applies to", "correct the stage, or take the row out"}
-	noPair         = saying{"is a pair of stages, which only delay uses", "join stages by +, as cook + rest"}
-	appliesUnknown = saying{"matches no product and no family{1}", "type all, family: NAME, or the name of a product"}
-	familyNear     = saying{"is a family that no limit names; did you mean {1}, which the limit {2} is for?", "correct the family, or give it limits of its own"}
-	familyUnknown  = saying{"matches no family of the sheet Products{1}", "correct the name of the family"}
-	whereUnknown   = saying{"is not a place{1}", "type every point, surface, centre, medium, or the name of a row of Points"}
-	whereLacking   = saying{"is a point that {1} does not have", "add it to Points for each product that the limit applies to"}
-	tableUnknown   = saying{"is not a table of the sheet Tables{1}", "correct the name"}
-	clockUnknown   = saying{"does not say when the clock starts", "type crossing, crossing of 60 °C, stage start: NAME, or stage end: NAME"}
-	clockNoUnit    = saying{"does not say the unit of its temperature", "type it as crossing of 60 °C or crossing of 140 °F"}
-	notAltitude    = saying{"is not an altitude between −500 and 6000 m", "type the height above the sea, such as 350 m"}
-	noCitation     = saying{"{1} {2} missing", "name the document, clause and edition that the limit comes from; the report's front page says that it is missing"}
-	clauseDate     = saying{"looks as if the spreadsheet had turned the {1} into a date", "type it as text (an apostrophe in front), as the code prints it"}
-	clauseDecimal  = saying{"looks as if the spreadsheet had turned the {1} into a decimal number: 1.10 becomes 1.1", "type it as text (an apostrophe in front), as the code prints it"}
-	groupUnknown   = saying{"is not a group of any limit or row of Groups{1}", "correct the name"}
-	groupCycle     = saying{"lies within itself by way of {1}", "let groups lie within each other in one direction only"}
-	groupDeep      = saying{"lies more than {1} groups deep", "let groups lie within each other less deep"}
-	unusualLimit   = saying{"is read as {1}, which is unusual for the rule {2}{3}: usual is {4}", "check the number and its unit: {5}"}
-	groupEmpty     = saying{"is a group that no limit and no other group belongs to", "name it in the column Group of Limits, or take the row out"}
+	limitNeeds       = saying{"{1} is missing: the rule {2} needs it", "fill it"}
+	limitUnused      = saying{"is given, but the rule {1} does not use {2}", "clear the cell or choose another rule"}
+	stageUnknown     = saying{"is not a stage{1}", "choose from: {2}; join several by +, as cook + rest"}
+	stageNowhere     = saying{"is a stage of no step of the products that the limit applies to", "correct the stage, or take the row out"}
+	noPair           = saying{"is a pair of stages, which only delay uses", "join stages by +, as cook + rest"}
+	appliesUnknown   = saying{"matches no product and no family{1}", "type all, family: NAME, or the name of a product"}
+	familyNear       = saying{"is a family that no limit names; did you mean {1}, which the limit {2} is for?", "correct the family, or give it limits of its own"}
+	familyUnknown    = saying{"matches no family of the sheet Products{1}", "correct the name of the family"}
+	whereUnknown     = saying{"is not a place{1}", "type every point, surface, centre, medium, or the name of a row of Points"}
+	whereLacking     = saying{"is a point that {1} does not have", "add it to Points for each product that the limit applies to"}
+	tableUnknown     = saying{"is not a table of the sheet Tables{1}", "correct the name"}
+	clockUnknown     = saying{"does not say when the clock starts", "type crossing, crossing of 60 °C, stage start: NAME, or stage end: NAME"}
+	clockNoUnit      = saying{"does not say the unit of its temperature", "type it as crossing of 60 °C or crossing of 140 °F"}
+	notAltitude      = saying{"is not an altitude between −500 and 6000 m", "type the height above the sea, such as 350 m"}
+	noCitation       = saying{"{1} {2} missing", "name the document, clause and edition that the limit comes from; the report's front page says that it is missing"}
+	recordOutside    = saying{"leads out of the plan's folder, from which alone records are read", "put the file into the folder of the plan, and type its path from there"}
+	recordProcess    = saying{"is not the process of {1}, which is {2}", "correct it, or leave it blank"}
+	recordOfNone     = saying{"Neither Product nor Process says whose record it is", "name the product that was probed, or, for a medium, the process"}
+	recordOfMany     = saying{"The record is one of the {1} and of a process with {2} products", "name the product that was probed"}
+	recordMediumBare = saying{"does not say of which step", "write medium of STEP, with the name of the step"}
+	recordPlace      = saying{"is none of what a logger may have measured{1}", "write {2}"}
+	recordOrder      = saying{"begins no later than the step before it", "write the steps in their order, each once, divided by semicolons"}
+	recordNoTime     = saying{"has no time", "write each step with its time: Oven 09:12; Chill 11:20"}
+	recordStart      = saying{"is neither a step nor a time{1}", "write a step, a time of the clock (09:12 or 2026-11-03 09:12), a time after the first reading (20 min), or steps with their times: Oven 09:12; Chill 11:20"}
+
+	clauseDate    = saying{"looks as if the spreadsheet had turned the {1} into a date", "type it as text (an apostrophe in front), as the code prints it"}
+	clauseDecimal = saying{"looks as if the spreadsheet had turned the {1} into a decimal number: 1.10 becomes 1.1", "type it as text (an apostrophe in front), as the code prints it"}
+	groupUnknown  = saying{"is not a group of any limit or row of Groups{1}", "correct the name"}
+	groupCycle    = saying{"lies within itself by way of {1}", "let groups lie within each other in one direction only"}
+	groupDeep     = saying{"lies more than {1} groups deep", "let groups lie within each other less deep"}
+	unusualLimit  = saying{"is read as {1}, which is unusual for the rule {2}{3}: usual is {4}", "check the number and its unit: {5}"}
+	groupEmpty    = saying{"is a group that no limit and no other group belongs to", "name it in the column Group of Limits, or take the row out"}
 )
 
 // fill puts the arguments into a wording.

@@ -28,20 +28,23 @@ type Product struct {
 
 // Readings is everything typed or defaulted that the product uses: its own row, its food, points, steps, faces, courses, then the
 // limits, groups and tables that apply to it. It is put together anew at each call, so that 10,000 products share what they share.
-func (p *Product) Readings() []cell.Reading {
+func (p *Product) Readings() []cell.Reading { return readingsOf(p.readings, p.origins) }
+
+// readingsOf unfolds echoes.
+func readingsOf(parts [][]echoes, from *origins) []cell.Reading {
 	n := 0
-	for _, part := range p.readings {
+	for _, part := range parts {
 		for i := range part {
 			n += len(part[i].list)
 		}
 	}
 	out := make([]cell.Reading, 0, n)
-	for _, part := range p.readings {
+	for _, part := range parts {
 		for i := range part {
 			row := &part[i]
 			for _, e := range row.list {
 				r := cell.Reading{At: cell.Ref{Sheet: row.sheet, Row: row.row, Col: int(e.col)}, Column: e.column.Heading, Used: e.used}
-				r.From = p.origins.ofValue(r.At)
+				r.From = from.ofValue(r.At)
 				if e.blank {
 					r.Why = e.text
 				} else {
@@ -134,6 +137,7 @@ type Plan struct {
 	NotCalculated []NotCalculated
 	Limits        []rules.Limit // also those with faults (Unreadable): they are cannot tell
 	Groups        []rules.Group
+	Records       []Record                  // the rows of Records, those with faults too
 	Problems      cell.Errors               // in workbook order
 	Columns       map[string]map[string]int // sheet -> heading without unit -> column number, for Locate
 	Sheets        []string                  // the sheets in the order of the workbook, by the names that the user gave

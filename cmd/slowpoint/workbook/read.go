@@ -79,20 +79,22 @@ func readFile(name string, size int64, what string) (data []byte, digest string,
 
 // reader is a plan while it is read.
 type reader struct {
-	plan     *Plan
-	list     []*Sheet          // the sheets there may be
-	made     map[string]*Grid  // sheets that the import made, by the name in MadeSheets; nil where there is no import
-	tables   map[string]*table // by the name in Sheets
-	grids    map[string]*Grid
-	unread   map[string]cell.Errors // why a sheet, or a part of it, could not be read
-	ignore   map[string]bool        // headings of the item Ignore columns, by key
-	decimal  unit.Decimal
-	shownBy  cell.Ref               // the cell that shows the decimal sign; the zero Ref if the sheet Plan says it
-	formulas map[cell.Ref]*formulas // by sheet and column
-	inOrder  []*formulas
-	wraps    formulas // tight wraps without a resistance
-	offers   int      // of names for misspelt ones
-	problems cell.Errors
+	plan      *Plan
+	list      []*Sheet          // the sheets there may be
+	made      map[string]*Grid  // sheets that the import made, by the name in MadeSheets; nil where there is no import
+	tables    map[string]*table // by the name in Sheets
+	grids     map[string]*Grid
+	unread    map[string]cell.Errors // why a sheet, or a part of it, could not be read
+	ignore    map[string]bool        // headings of the item Ignore columns, by key
+	decimal   unit.Decimal
+	stated    unit.Decimal           // what the sheet Plan says
+	dateOrder string                 // what the sheet Plan says; "" for nothing
+	shownBy   cell.Ref               // the cell that shows the decimal sign; the zero Ref if the sheet Plan says it
+	formulas  map[cell.Ref]*formulas // by sheet and column
+	inOrder   []*formulas
+	wraps     formulas // tight wraps without a resistance
+	offers    int      // of names for misspelt ones
+	problems  cell.Errors
 
 	height    []echoes // of the item Altitude
 	foods     map[string]*food
@@ -224,9 +226,9 @@ func (r *reader) read() {
 	r.readFaces()
 	r.unusedCourses()
 	r.readPoints()
-	r.notYet()
 	r.chains()
 	r.readSpread()
+	r.readRecords()
 	r.readLimits()
 	r.finish()
 }
@@ -378,8 +380,9 @@ func (r *reader) planItem(l *Line, known, item, value string) {
 		}
 	case "Decimal sign":
 		r.decimal = map[string]unit.Decimal{"point": unit.Point, "comma": unit.Comma}[choice()]
+		r.stated = r.decimal
 	case "Date order":
-		choice()
+		r.dateOrder = choice()
 	case "Ignore columns":
 		for _, c := range strings.FieldsFunc(value, func(c rune) bool { return c == ',' || c == ';' }) {
 			if of := r.sheetsWith(c); len(of) > 0 {
@@ -444,44 +447,4 @@ func (r *reader) decimalSign() {
 	case comma:
 		r.decimal, r.shownBy = unit.Comma, first[unit.Comma]
 	}
-}
-
-// notYet tells of sheets that are recognised and cannot be used yet, and refuses the products that they concern.
-func (r *reader) notYet() {
-	for _, s := range Sheets {
-		t := r.tables[s.Name]
-		if s.Refused == "" || t == nil {
-			continue
-		}
-		for i, l := range t.lines {
-			var concerned []*product
-			switch s.Name {
-			case "Records":
-				concerned = r.products
-				if i < 200 {
-					concerned = r.matching(l.Words("Product"), l.Words("Process"))
-				}
-			}
-			first := s.Columns[0].Heading
-			l.Fault(first, l.Entry(first).Text, sheetNotYet, s.Refused)
-			for _, p := range concerned {
-				p.suffer(l.because)
-			}
-		}
-	}
-}
-
-// matching finds the products that a name means: all, a family, a product, a process or process/step. With two words both must match.
-func (r *reader) matching(word, processName string) []*product {
-	var out []*product
-	w := Key(word)
-	w = strings.TrimSpace(strings.TrimPrefix(w, "family:"))
-	for _, p := range r.products {
-		proc, _, _ := strings.Cut(w, "/")
-		hit := w == "" && processName != "" || w == "all" || w != "" && (w == Key(p.Name) || w == Key(p.Family) || strings.TrimSpace(proc) == Key(p.Process))
-		if hit && (processName == "" || Key(processName) == Key(p.Process)) {
-			out = append(out, p)
-		}
-	}
-	return out
 }
