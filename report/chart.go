@@ -897,6 +897,13 @@ func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *mo
 				course(pt.Name, hist, pt.Place)
 			}
 		}
+		if tr := p.predicted; tr != nil {
+			l := line{name: tr.Name}
+			for i, c := range predictedAt(tr, times) {
+				l.x, l.y = append(l.x, axis.at(times[i])), append(l.y, h.shown(c))
+			}
+			f.lines = append(f.lines, l)
+		}
 	} else if at, ok := surfacePlace(&p.Product); ok && at != d.place {
 		course(p.Product.Lies(at), hist, at)
 	}

@@ -191,16 +191,17 @@ type Row struct {
 	Deciding         string   // the limit that settles the verdict
 	MarginK          *float64 // of the deciding limit
 	MarginS          *float64
-	MarginPlace      string // the place of MarginK where it is not the deciding one; "" elsewhere
-	Beside           string // what must be read with the verdict, in sentences; Why ends with it
-	Problems         int    // warnings that touch the product
-	File             string // name of its document; set by whoever names the files
+	MarginPlace      string        // the place of MarginK where it is not the deciding one; "" elsewhere
+	Beside           string        // what must be read with the verdict, in sentences; Why ends with it
+	Problems         int           // warnings that touch the product
+	Measured         rules.Verdict // the worst of its records; NotApplicable: it has none
+	File             string        // name of its document; set by whoever names the files
 	tight            float64
 }
 
 // Row gives the product's line of the overview.
 func (p *Product) Row() Row {
-	r := Row{Product: p.Product.Name, Process: p.Process, Verdict: p.Judgement.Verdict, Why: sentence(p.Judgement.Why), tight: math.Inf(1)}
+	r := Row{Product: p.Product.Name, Process: p.Process, Verdict: p.Judgement.Verdict, Why: sentence(p.Judgement.Why), tight: math.Inf(1), Measured: p.measuredWorst()}
 	if d := p.decides(); d.finding != nil {
 		f := d.finding
 		g := p.telling(f)

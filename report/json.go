@@ -149,6 +149,54 @@ type (
 		MarginK json.RawMessage `json:"margin_change_K"`
 		MarginS json.RawMessage `json:"margin_change_s"`
 	}
+	recordJSON struct {
+		Record     string          `json:"record"`
+		At         string          `json:"at"`
+		What       string          `json:"what_it_measured"`
+		File       string          `json:"file"`
+		SHA256     string          `json:"sha256"`
+		Sheet      string          `json:"sheet"`
+		Column     string          `json:"column"`
+		Unit       string          `json:"unit"`
+		Begins     string          `json:"begins"`
+		Verdict    string          `json:"verdict"`
+		Readings   int             `json:"readings"`
+		Step       json.RawMessage `json:"usual_step_s"`
+		Resolution json.RawMessage `json:"resolution_K"`
+		Accuracy   json.RawMessage `json:"accuracy_K"`
+		Correction json.RawMessage `json:"correction_K"`
+		Missing    int             `json:"missing"`
+		Doubtful   int             `json:"doubtful"`
+		Gaps       json.RawMessage `json:"gaps_s"`
+		Before     int             `json:"left_out_before"`
+		After      int             `json:"left_out_after"`
+		Findings   []findingJSON   `json:"findings"`
+		Against    *againstJSON    `json:"against_prediction,omitempty"`
+		Problems   []problemJSON   `json:"problems"`
+	}
+	againstJSON struct {
+		Place    string          `json:"place"`
+		AtMM     json.RawMessage `json:"at_mm"`
+		Readings int             `json:"readings"`
+		Bias     json.RawMessage `json:"bias_K"`
+		RMS      json.RawMessage `json:"rms_K"`
+		Colder   json.RawMessage `json:"colder_while_heated_K"`
+		ColderS  json.RawMessage `json:"colder_at_s"`
+		Warmer   json.RawMessage `json:"warmer_otherwise_K"`
+		WarmerS  json.RawMessage `json:"warmer_at_s"`
+		Slowest  json.RawMessage `json:"slowest_place_beyond_K"`
+		SlowestS json.RawMessage `json:"slowest_place_at_s"`
+		Fitted   []fittedJSON    `json:"fitted,omitempty"`
+	}
+	fittedJSON struct {
+		What  string          `json:"what"`
+		Value json.RawMessage `json:"value"`
+		Low   json.RawMessage `json:"low"`
+		High  json.RawMessage `json:"high"`
+		Typed json.RawMessage `json:"typed"`
+		Unit  string          `json:"unit"`
+		Told  bool            `json:"told_by_the_record"`
+	}
 	groupJSON struct {
 		Group     string `json:"group"`
 		Join      string `json:"join"`
@@ -202,6 +250,9 @@ func (j *JSON) Add(p *Product) error {
 		list(j, "worst_cases", worstOfAll(p), false)
 	}
 	list(j, "groups", groupsOf(p.Judgement.Groups), false)
+	if len(p.Measured) > 0 {
+		list(j, "records", recordsOf(p), false)
+	}
 	list(j, "cautions", cautionsOf(Cautions(j.h, p)), false)
 	list(j, "input", readingsOf(p.Readings), true)
 	j.put("  }")
@@ -534,6 +585,40 @@ func findingsOf(fs []rules.Finding) []findingJSON {
 		}
 		if l := f.Limit; l != nil {
 			one.Limit, one.Rule, one.Code, one.Clause, one.Edition = l.Name, ruleName(l), l.Code, l.Clause, l.Edition
+		}
+		out = append(out, one)
+	}
+	return out
+}
+
+// recordsOf are the records of a product.
+func recordsOf(p *Product) []recordJSON {
+	out := make([]recordJSON, 0, len(p.Measured))
+	for i := range p.Measured {
+		m := &p.Measured[i]
+		one := recordJSON{Record: m.Name, At: m.At.String(), What: m.What, File: m.File, SHA256: m.SHA256, Sheet: m.Sheet, Column: m.Column, Unit: m.Unit,
+			Begins: m.Begins, Verdict: overall(m.verdict()).String(), Readings: m.Readings, Step: exactNumber(&m.StepS), Resolution: exactNumber(&m.ResolutionK),
+			Accuracy: exactNumber(m.AccuracyK), Correction: exactNumber(&m.CorrectionK), Missing: m.Missing, Doubtful: m.Doubtful, Before: m.Before, After: m.After,
+			Findings: findingsOf(m.Judgement.Findings), Problems: problemsOf(m.Problems)}
+		gaps := []byte{'['}
+		for k, g := range m.Gaps {
+			if k > 0 {
+				gaps = append(gaps, ", "...)
+			}
+			gaps = appendNumbers(gaps, g[:], 2, 3)
+		}
+		one.Gaps = append(gaps, ']')
+		if a := m.Against; a != nil {
+			one.Against = &againstJSON{Place: a.PlaceName, AtMM: appendPlace(nil, a.Place), Readings: a.Readings, Bias: fixedNumber(&a.BiasK, 4), RMS: fixedNumber(&a.RMSK, 4),
+				Colder: fixedNumber(&a.ColderK, 4), ColderS: exactNumber(&a.ColderS), Warmer: fixedNumber(&a.WarmerK, 4), WarmerS: exactNumber(&a.WarmerS),
+				Slowest: fixedNumber(&a.SlowestK, 4), SlowestS: exactNumber(&a.SlowestS)}
+			for _, f := range a.Fitted {
+				typed := &f.Typed
+				if f.Typed == 0 {
+					typed = nil
+				}
+				one.Against.Fitted = append(one.Against.Fitted, fittedJSON{f.What, tenFigures(&f.Value), tenFigures(&f.Low), tenFigures(&f.High), tenFigures(typed), f.Unit, !f.Vague})
+			}
 		}
 		out = append(out, one)
 	}

@@ -1034,6 +1034,11 @@ func (x *sheet) measured() {
 		d.page()
 	}
 	d.heading(say("measured title"), 0, 43)
+	if !rec && len(p.Measured) > 0 {
+		d.text(say("measured note"))
+		x.records()
+		return
+	}
 	if !rec {
 		d.text(say("measured none"))
 		x.blankTable([]string{"blank date", "blank batch", "blank place", "blank start", "blank end", "blank logger", "blank initials"}, 3) // runs that are often asked for
@@ -1043,6 +1048,10 @@ func (x *sheet) measured() {
 	d.head.history(p, x.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 88))
 	d.y += 89
 	d.text(x.slowestSentence())
+	for i := range p.Measured { // the record itself
+		d.pairs(p.Measured[i].facts(x.head), 34)
+		x.echo(&p.Measured[i])
+	}
 }
 
 // blankTable is a form of n blank rows.

@@ -349,6 +349,7 @@ type Workbook struct {
 	names                    *names
 	findings, courses, input *grid
 	drivers                  *grid // nil until something varies
+	records                  *grid // nil until something was measured
 }
 
 // NewWorkbook makes a writer of results.xlsx; nothing reaches w before Close.
@@ -429,12 +430,13 @@ func (b *Workbook) Add(p *Product) error {
 	b.rows = append(b.rows, slimOf(b.h, p, len(b.rows)+1))
 	b.addFindings(p)
 	b.addDrivers(p)
+	b.addRecords(p)
 	b.addCourse(p)
 	b.input.room(len(p.Readings))
 	for _, r := range p.Readings {
 		b.reading(p.Product.Name, &r)
 	}
-	return errors.Join(b.findings.err, b.driversErr(), b.courses.err, b.input.err, b.names.err)
+	return errors.Join(b.findings.err, errOf(b.drivers), errOf(b.records), b.courses.err, b.input.err, b.names.err)
 }
 
 // reading writes a row of the input.
@@ -485,18 +487,8 @@ func (b *Workbook) addFinding(p *Product, f *rules.Finding) {
 	for _, s := range []string{p.Product.Name, p.Process, l.Name, ruleName(l), f.Level, l.Group, f.Verdict.String()} {
 		g.text(s)
 	}
-	for _, v := range []*float64{f.Value, f.Required} {
-		switch {
-		case v == nil:
-			g.skip()
-		case f.Unit == "°C":
-			g.number(b.h.inUnit(*v))
-		case f.Unit == "K":
-			g.number(*v * b.h.perK())
-		default:
-			g.number(*v)
-		}
-	}
+	b.amount(g, f, f.Value)
+	b.amount(g, f, f.Required)
 	g.text(b.h.unitWord(f.Unit))
 	g.maybe(f.MarginK, b.h.perK())
 	g.maybe(f.MarginS, 1./60)
@@ -526,11 +518,90 @@ func (b *Workbook) addFinding(p *Product, f *rules.Finding) {
 	g.end()
 }
 
-func (b *Workbook) driversErr() error {
-	if b.drivers == nil {
+// errOf is what went wrong with a sheet that may not be there.
+func errOf(g *grid) error {
+	if g == nil {
 		return nil
 	}
-	return b.drivers.err
+	return g.err
+}
+
+func recordColumns(h *Head) []gridColumn {
+	u := " (" + h.unit() + " difference)"
+	return []gridColumn{{"Product", 30, 0}, {"Record", 28, 0}, {"Limit", 28, 0}, {"Verdict", 14, 0}, {"Value", 12, 6}, {"Required", 12, 6}, {"Unit", 14, 0},
+		{"Margin" + u, 14, 4}, {"Margin (min)", 12, 4}, {"Deciding time (min)", 12, 4}, {"Verdict of the prediction", 14, 0}, {"Predicted margin" + u, 14, 4},
+		{"Predicted margin (min)", 12, 4}, {"Why", 80, 0}, {"What it measured", 20, 0}, {"File", 30, 0}, {"Readings", 10, 0}, {"Accuracy" + u, 12, 4},
+		{"Bias" + u, 12, 4}, {"Root mean square" + u, 12, 4}, {"Colder while heated" + u, 12, 4}, {"Warmer otherwise" + u, 12, 4}, {"Cells", 30, 0}}
+}
+
+// addRecords writes a row for each finding on a record, beside that on the prediction; its cells stand in the order of recordColumns.
+func (b *Workbook) addRecords(p *Product) {
+	if len(p.Measured) == 0 {
+		return
+	}
+	if b.records == nil {
+		b.records = newGrid("Records", recordColumns(b.h), b.h.Paper, b.names)
+	}
+	g, perK := b.records, b.h.perK()
+	for i := range p.Measured {
+		m := &p.Measured[i]
+		fs := m.Judgement.Findings
+		if len(fs) == 0 {
+			fs = []rules.Finding{{Verdict: m.verdict(), Why: m.Judgement.Why, Limit: &rules.Limit{}}}
+		}
+		for k := range fs {
+			f := &fs[k]
+			g.room(1)
+			g.begin()
+			for _, s := range []string{p.Product.Name, m.Name, f.Limit.Name, f.Verdict.String()} {
+				g.text(s)
+			}
+			b.amount(g, f, f.Value)
+			b.amount(g, f, f.Required)
+			g.text(b.h.unitWord(f.Unit))
+			g.maybe(f.MarginK, perK)
+			g.maybe(f.MarginS, 1./60)
+			g.maybe(f.AtS, 1./60)
+			predicted := &rules.Finding{}
+			verdict := ""
+			for n := range p.Judgement.Findings {
+				if of := &p.Judgement.Findings[n]; of.Limit == f.Limit && of.Level != "alternative" {
+					predicted, verdict = of, of.Verdict.String()
+				}
+			}
+			g.text(verdict)
+			g.maybe(predicted.MarginK, perK)
+			g.maybe(predicted.MarginS, 1./60)
+			for _, s := range []string{f.Why, m.What, m.File} {
+				g.text(s)
+			}
+			g.number(float64(m.Readings))
+			g.maybe(m.AccuracyK, perK)
+			if a := m.Against; a != nil {
+				for _, v := range []float64{a.BiasK, a.RMSK, a.ColderK, a.WarmerK} {
+					g.number(v * perK)
+				}
+			} else {
+				g.col += 4
+			}
+			g.text(strings.Join(cellNames(f.Cells), ", "))
+			g.end()
+		}
+	}
+}
+
+// amount writes a value of a finding in the user's unit.
+func (b *Workbook) amount(g *grid, f *rules.Finding, v *float64) {
+	switch {
+	case v == nil:
+		g.skip()
+	case f.Unit == "°C":
+		g.number(b.h.inUnit(*v))
+	case f.Unit == "K":
+		g.number(*v * b.h.perK())
+	default:
+		g.number(*v)
+	}
 }
 
 func driverColumns(h *Head) []gridColumn {
@@ -747,6 +818,9 @@ func isoDate(h *Head) string {
 // Close writes the workbook and lets go of what was spooled. Call it once, after the last product, also after an error.
 func (b *Workbook) Close() (err error) {
 	grids := []*grid{b.overview(), b.findings, b.courses, b.input}
+	if b.records != nil {
+		grids = append(grids, b.records)
+	}
 	if b.drivers != nil {
 		grids = append(grids, b.drivers)
 	}

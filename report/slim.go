@@ -23,7 +23,7 @@ func (s *slim) word() string {
 	if !s.calculated {
 		return "not calculated"
 	}
-	return s.Verdict.String()
+	return s.Row.Words(rules.Verdict.String)
 }
 
 // slimOf keeps what a list needs of a product.
@@ -32,6 +32,22 @@ func slimOf(h *Head, p *Product, order int) slim {
 		at: p.Product.At, calculated: true, cautions: len(Cautions(h, p))}
 	s.Verdict = overall(s.Verdict)
 	return s
+}
+
+// worst is the less favourable of what was predicted and what was measured.
+func (r *Row) worst() rules.Verdict {
+	if weight(r.Measured) < weight(r.Verdict) {
+		return r.Measured
+	}
+	return r.Verdict
+}
+
+// Words is the verdict in words, and the worst of the records beside it.
+func (r *Row) Words(word func(rules.Verdict) string) string {
+	if r.Measured == rules.NotApplicable {
+		return word(overall(r.Verdict))
+	}
+	return say("verdict beside record", word(overall(r.Verdict)), word(r.Measured))
 }
 
 // overall is the verdict of a product: one of three words.
@@ -47,7 +63,7 @@ func overall(v rules.Verdict) rules.Verdict {
 func listed(ns []NotCalculated, rows []slim) []slim {
 	out := make([]slim, 0, len(ns)+len(rows))
 	for _, n := range ns {
-		s := slim{Row: Row{Product: n.Product, tight: math.Inf(1)}, at: n.At}
+		s := slim{Row: Row{Product: n.Product, tight: math.Inf(1), Measured: rules.NotApplicable}, at: n.At}
 		if len(n.Because) > 0 {
 			s.Why = n.Because[0].Error()
 		}
@@ -59,8 +75,8 @@ func listed(ns []NotCalculated, rows []slim) []slim {
 		switch {
 		case a.calculated != b.calculated:
 			return b.calculated
-		case a.Verdict != b.Verdict:
-			return weight(a.Verdict) < weight(b.Verdict)
+		case a.worst() != b.worst():
+			return weight(a.worst()) < weight(b.worst())
 		}
 		return a.tight < b.tight
 	})

@@ -73,7 +73,7 @@ func (d *doc) summary(rows []Row) {
 		if r.Problems > 0 {
 			name += "\n" + say("row notes", r.Problems)
 		}
-		cells = append(cells, []string{name, r.Process, verdictWord(overall(r.Verdict)), margin, r.Deciding})
+		cells = append(cells, []string{name, r.Process, r.Words(verdictWord), margin, r.Deciding})
 	}
 	if len(cells) == 0 {
 		d.text(say("summary none"))

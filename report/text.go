@@ -71,6 +71,9 @@ var textWords = map[string]string{
 	"limit low":      " (second run, at 0.9 of the conductivity)",
 	"limit mixed":    " (run as well mixed)",
 	"limit worst":    " (at its unfavourable ends)",
+	"measured":       "Measured (the user's own records)",
+	"record":         "Record %s",
+	"record limit":   "Record %s, limit %s: %s",
 	"drivers":        "What drives each margin",
 	"drivers of":     "%s",
 	"driver":         "%d. %s. %s. Basis: %s",
@@ -165,6 +168,7 @@ func (t *Text) Add(p *Product) error {
 	t.limits(x)
 	t.drivers(x)
 	t.course(x)
+	t.records(x)
 	t.basis(x)
 	t.cautions(x)
 	t.readings(p)
@@ -228,6 +232,47 @@ func limitRun(name string) string {
 		name = "worst"
 	}
 	return textWords["limit "+name]
+}
+
+// records write what was measured.
+func (t *Text) records(x *sheet) {
+	if len(x.p.Measured) == 0 {
+		return
+	}
+	t.heading(2, "measured")
+	t.plain(say("measured note"))
+	for i := range x.p.Measured {
+		m := &x.p.Measured[i]
+		t.heading(3, "record", m.Name)
+		t.plain(m.verdictOf(x.p))
+		for _, e := range m.Problems {
+			t.problem(e)
+		}
+		for _, f := range m.facts(t.h) {
+			if f[1] != "" {
+				t.item(fmt.Sprintf(textWords["item"], f[0], f[1]))
+			}
+		}
+		for _, s := range m.compared(t.h) {
+			t.plain(s)
+		}
+		if m.History == nil {
+			continue
+		}
+		q := m.asProduct(x.p)
+		y := &sheet{doc: x.doc, p: q, decides: q.decides(), order: q.worstFirst()}
+		for _, f := range y.order {
+			if f.Limit == nil || f.Verdict == rules.NotApplicable {
+				continue
+			}
+			t.heading(3, "record limit", m.Name, f.Limit.Name, f.Verdict)
+			for _, r := range y.cardRows(f) {
+				if r[1] != "" {
+					t.item(fmt.Sprintf(textWords["item"], r[0], r[1]))
+				}
+			}
+		}
+	}
 }
 
 // drivers writes what drives each margin.

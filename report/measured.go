@@ -1,0 +1,286 @@
+package report
+
+import (
+	"fmt"
+	"math"
+	"slices"
+	"strings"
+
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/rules"
+)
+
+// Measured is the record of a logger: what was read, and what the limits say of it. It stands apart from the prediction.
+type Measured struct {
+	Name, What         string // what it measured, as typed
+	At                 cell.Ref
+	File, SHA256       string
+	Sheet, Column      string
+	Unit               string // of the file
+	Begins             string // the clock of the first reading; "" if the file has none
+	Sensor, Calibrated string
+	Note               string
+	Readings           int
+	StepS              float64  // the usual time between two, s
+	ResolutionK        float64  // smallest step of the readings
+	AccuracyK          *float64 // of the instrument; nil: not stated
+	CorrectionK        float64
+	Missing, Doubtful  int
+	Gaps               [][2]float64 // s from the start of the chain
+	Before, After      int          // readings outside the chain, which were left out
+	About              []string     // lines above the table of the file
+	Echo               []EchoRow
+	History            *model.History // nil where the record could not be used
+	Judgement          rules.Judgement
+	Against            *Against // the prediction beside it; nil if there is none
+	Problems           cell.Errors
+}
+
+// EchoRow is a row of the file as typed and as understood.
+type EchoRow struct {
+	Line       int
+	Time, Read string
+	S, C       float64
+}
+
+// Against holds a record against the prediction at one place, with the steps as long as they were.
+type Against struct {
+	Place     model.Place
+	PlaceName string
+	TimesS, C []float64 // the prediction
+	Readings  int       // that were compared
+	BiasK     float64   // mean of record minus prediction
+	RMSK      float64
+	ColderK   float64 // by how much the record was colder at most, in steps that heat, at ColderS; 0: nowhere
+	ColderS   float64
+	WarmerK   float64 // by how much it was warmer at most, in the other steps, at WarmerS
+	WarmerS   float64
+	SlowestK  float64 // of a record of a named point: how much slower the slowest place was at the least favourable instant, by prediction
+	SlowestS  float64
+	Fitted    []Fitted
+	Correl    float64
+	FittedRMS float64 // with the fitted values
+	NotFitted string  // why nothing was fitted though it was asked for
+}
+
+// Fitted is a value that makes the prediction follow the record, with its interval of 95 %.
+type Fitted struct {
+	What             string // "film coefficient of Oven", "conductivity"
+	Value, Low, High float64
+	Typed            float64 // what was taken; 0: nothing
+	Unit             string
+	Vague            bool // the record does not tell it
+}
+
+// asProduct is a record as a product of its own, so that its findings are worded and drawn as any others.
+func (m *Measured) asProduct(p *Product) *Product {
+	q := &Product{Product: p.Product, Steps: p.Steps, Family: p.Family, RecipeVersion: p.RecipeVersion, Batch: p.Batch, Process: p.Process,
+		History: m.History, Judgement: m.Judgement, From: p.From}
+	if m.Against != nil {
+		q.predicted = &model.Trace{Point: model.Point{Name: say("line predicted")}, TimesS: m.Against.TimesS, C: m.Against.C}
+	}
+	return q
+}
+
+// facts are what is known of a record, as pairs.
+func (m *Measured) facts(h *Head) [][2]string {
+	where := m.File
+	if m.Sheet != "" {
+		where += say("record sheet", m.Sheet)
+	}
+	accuracy := say("record no accuracy")
+	if m.AccuracyK != nil {
+		accuracy = h.difference(*m.AccuracyK, up)
+	}
+	correction := ""
+	if m.CorrectionK != 0 {
+		correction = signed(m.CorrectionK, func(k float64) string { return h.difference(k, nearest) })
+	}
+	gaps := make([]string, 0, len(m.Gaps))
+	for i, g := range m.Gaps {
+		if i == 6 {
+			gaps = append(gaps, say("and more", len(m.Gaps)-6))
+			break
+		}
+		gaps = append(gaps, say("record gap", duration(g[0], nearest), duration(g[1], nearest), duration(g[1]-g[0], nearest)))
+	}
+	left := ""
+	if m.Before+m.After > 0 {
+		left = say("record outside", m.Before, m.After)
+	}
+	lacking := ""
+	if m.Missing > 0 {
+		lacking = say("record missing", m.Missing)
+	}
+	if m.Doubtful > 0 {
+		lacking = strings.TrimSpace(lacking + " " + say("record doubtful", m.Doubtful))
+	}
+	return [][2]string{
+		{say("record what"), m.What},
+		{say("record file"), where},
+		{say("key digest"), m.SHA256},
+		{say("record column"), joined(m.Column, m.Unit)},
+		{say("record begins"), m.Begins},
+		{say("record readings"), say("record count", m.Readings, duration(m.StepS, nearest), h.difference(m.ResolutionK, nearest))},
+		{say("record lacking"), lacking},
+		{say("record gaps"), strings.Join(gaps, "; ")},
+		{say("record left"), left},
+		{say("record sensor"), m.Sensor},
+		{say("record calibrated"), m.Calibrated},
+		{say("record correction"), correction},
+		{say("record accuracy"), accuracy},
+		{say("key note"), m.Note},
+	}
+}
+
+// verdictOf is the verdict of a record with the limit that settles it, in a sentence.
+func (m *Measured) verdictOf(p *Product) string {
+	if m.History == nil {
+		return say("record unusable", m.Name)
+	}
+	q := m.asProduct(p)
+	r := q.Row()
+	why := r.Why
+	if r.Deciding != "" {
+		why = r.Deciding + ": " + why
+	}
+	return say("record verdict", m.Name, overall(m.Judgement.Verdict).String(), sentence(why))
+}
+
+// compared says how the record lay to the prediction.
+func (m *Measured) compared(h *Head) []string {
+	a := m.Against
+	if a == nil {
+		return nil
+	}
+	signed := func(k float64) string { return signed(k, func(k float64) string { return h.difference(k, nearest) }) }
+	out := []string{say("against", a.PlaceName, a.Readings, signed(a.BiasK), h.difference(a.RMSK, up))}
+	switch {
+	case a.ColderK > 0 && a.WarmerK > 0:
+		out = append(out, say("against both", h.difference(a.ColderK, up), duration(a.ColderS, nearest), h.difference(a.WarmerK, up), duration(a.WarmerS, nearest)))
+	case a.ColderK > 0:
+		out = append(out, say("against colder", h.difference(a.ColderK, up), duration(a.ColderS, nearest)))
+	case a.WarmerK > 0:
+		out = append(out, say("against warmer", h.difference(a.WarmerK, up), duration(a.WarmerS, nearest)))
+	default:
+		out = append(out, say("against safe"))
+	}
+	if a.SlowestK > 0 {
+		out = append(out, say("against slowest", a.PlaceName, h.difference(a.SlowestK, up), duration(a.SlowestS, nearest)))
+	}
+	if len(a.Fitted) > 0 {
+		var s []string
+		for _, f := range a.Fitted {
+			words := say("fitted one", f.What, significant(f.Value), significant(f.Low), significant(f.High), f.Unit)
+			if f.Vague {
+				words = say("fitted vague", f.What, significant(f.Low), significant(f.High), f.Unit)
+			}
+			if f.Typed > 0 {
+				words += say("fitted typed", significant(f.Typed), f.Unit)
+			}
+			s = append(s, words)
+		}
+		out = append(out, say("fitted", strings.Join(s, "; "), h.difference(a.FittedRMS, up)))
+	}
+	if a.NotFitted != "" {
+		out = append(out, say("fitted not", a.NotFitted))
+	}
+	return out
+}
+
+// records are the measured part of a report.
+func (x *sheet) records() {
+	d := x.doc
+	for i := range x.p.Measured {
+		m := &x.p.Measured[i]
+		if i > 0 {
+			d.y += 3
+		}
+		d.heading(say("record title", m.Name), 1, 40)
+		d.para(m.verdictOf(x.p), style{size: body, bold: true, after: 1})
+		if len(m.Problems) > 0 {
+			x.problems(m.Problems)
+			d.y += 1.5
+		}
+		d.pairs(m.facts(x.head), 34)
+		if m.History == nil {
+			continue
+		}
+		q := m.asProduct(x.p)
+		y := &sheet{doc: d, p: q, decides: q.decides(), order: q.worstFirst()}
+		d.need(92)
+		x.head.history(q, y.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 88))
+		d.y += 89
+		d.text(y.slowestSentence())
+		for _, s := range m.compared(x.head) {
+			d.text(s)
+		}
+		for _, f := range y.order {
+			if f.Verdict != rules.NotApplicable {
+				y.card(f)
+			}
+		}
+		x.echo(m)
+	}
+}
+
+// echo shows the first and last rows of a file as they were understood.
+func (x *sheet) echo(m *Measured) {
+	if len(m.Echo) == 0 {
+		return
+	}
+	d := x.doc
+	d.heading(say("echo title"), 2, 25)
+	if len(m.About) > 0 {
+		d.text(say("echo about", strings.Join(m.About[:min(len(m.About), 6)], " / ")))
+	}
+	var rows [][]string
+	for _, e := range m.Echo {
+		rows = append(rows, []string{fmt.Sprint(e.Line), e.Time, e.Read, duration(e.S, nearest), x.head.temperature(e.C, nearest)})
+	}
+	d.table([]col{{title: say("echo line"), wide: 16}, {title: say("echo time"), wide: 48}, {title: say("echo read"), wide: 34}, {title: say("echo s"), wide: 40}, {title: say("echo c"), wide: frameWide - 138}}, rows, small)
+}
+
+// verdict is that of a record; CannotTell where it could not be used.
+func (m *Measured) verdict() rules.Verdict {
+	if m.History == nil {
+		return rules.CannotTell
+	}
+	return overall(m.Judgement.Verdict)
+}
+
+// measuredWorst is the worst verdict of the records of a product; NotApplicable if it has none.
+func (p *Product) measuredWorst() rules.Verdict {
+	worst := rules.NotApplicable
+	order := []rules.Verdict{rules.NotMet, rules.CannotTell, rules.Met, rules.NotApplicable}
+	for i := range p.Measured {
+		v := p.Measured[i].verdict()
+		if slices.Index(order, v) < slices.Index(order, worst) {
+			worst = v
+		}
+	}
+	return worst
+}
+
+// predictedAt is the prediction beside a record, for the chart.
+func predictedAt(tr *model.Trace, times []float64) []float64 {
+	out := make([]float64, len(times))
+	j := 0
+	for i, t := range times {
+		out[i] = math.NaN()
+		if len(tr.TimesS) == 0 || t < tr.TimesS[0]-1e-6 || t > tr.TimesS[len(tr.TimesS)-1]+1e-6 {
+			continue
+		}
+		for j+1 < len(tr.TimesS) && tr.TimesS[j+1] < t {
+			j++
+		}
+		if j+1 >= len(tr.TimesS) {
+			out[i] = tr.C[j]
+			continue
+		}
+		f := (t - tr.TimesS[j]) / (tr.TimesS[j+1] - tr.TimesS[j])
+		out[i] = tr.C[j] + min(max(f, 0), 1)*(tr.C[j+1]-tr.C[j])
+	}
+	return out
+}
