@@ -14,3 +14,12 @@ type Recording struct {
 	HighC   float64   // where none is known; then that of the whole record
 	Medium  *Trace    // of the surroundings; nil if not recorded
 }
+
+// Line is the record as straight segments between its readings. It fails where NewRecord does.
+func (r *Recording) Line() (*History, error) {
+	h, err := NewRecord(r.Spans, []Trace{{Point: r.Point, TimesS: r.TimesS, C: r.C}}, r.Medium)
+	if err == nil {
+		h.ErrorK = r.ErrorK
+	}
+	return h, err
+}

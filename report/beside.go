@@ -12,7 +12,12 @@ import (
 func (p *Product) beside() []string {
 	var s []string
 	for i := range p.Measured {
-		s = append(s, p.Measured[i].verdictOf(p))
+		if !p.recorded() {
+			s = append(s, p.Measured[i].verdictOf(p))
+		}
+	}
+	if p.Deviation != nil {
+		s = append(s, p.Deviation.verdict())
 	}
 	decides := p.decides().finding
 	for _, f := range p.worstFirst() {

@@ -904,7 +904,7 @@ func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *mo
 			}
 			f.lines = append(f.lines, l)
 		}
-	} else if at, ok := surfacePlace(&p.Product); ok && at != d.place {
+	} else if at, ok := SurfacePlace(&p.Product); ok && at != d.place {
 		course(p.Product.Lies(at), hist, at)
 	}
 	if hist.MediumC != nil {
@@ -947,8 +947,8 @@ func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *mo
 	}
 }
 
-// surfacePlace is the middle of the top, or the skin of a round piece; false where there is none of its own.
-func surfacePlace(p *model.Product) (model.Place, bool) {
+// SurfacePlace is the middle of the top, or the skin of a round piece; false where there is none of its own.
+func SurfacePlace(p *model.Product) (model.Place, bool) {
 	switch p.Shape {
 	case model.Stirred, nil:
 		return model.Place{}, false

@@ -108,6 +108,9 @@ func (h *Head) first(inC, inF string) string {
 // roomShown is the longest room that is written out, s: 1000 h.
 const roomShown = 3.6e6
 
+// Duration writes seconds as a person says them.
+func Duration(s float64) string { return duration(s, nearest) }
+
 // duration writes seconds as a person says them: "1 h 35 min", "3 h 05 min", "4 min 30 s", "2.5 s".
 // From an hour on it is rounded to the minute, below to the second, below ten seconds to a tenth.
 func duration(s float64, r rounding) string {

@@ -253,9 +253,18 @@ func (m *Measured) verdict() rules.Verdict {
 // measuredWorst is the worst verdict of the records of a product; NotApplicable if it has none.
 func (p *Product) measuredWorst() rules.Verdict {
 	worst := rules.NotApplicable
+	if p.recorded() {
+		return worst
+	}
 	order := []rules.Verdict{rules.NotMet, rules.CannotTell, rules.Met, rules.NotApplicable}
+	var all []rules.Verdict
 	for i := range p.Measured {
-		v := p.Measured[i].verdict()
+		all = append(all, p.Measured[i].verdict())
+	}
+	if p.Deviation != nil {
+		all = append(all, overall(p.Deviation.Judgement.Verdict))
+	}
+	for _, v := range all {
 		if slices.Index(order, v) < slices.Index(order, worst) {
 			worst = v
 		}

@@ -35,6 +35,7 @@ func (d *doc) product(p *Product) {
 	x.drivers()
 	x.predicted()
 	x.measured()
+	x.deviated()
 	x.basis()
 	x.warnings()
 	x.readings()

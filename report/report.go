@@ -105,6 +105,7 @@ type Product struct {
 	atWorst                                     []worstRun          // the runs of Worst
 	From                                        map[cell.Ref]string // where the cells of the findings come from, as that of Readings; nil if nothing is known
 	Measured                                    []Measured          // records of the product; none: nothing was measured
+	Deviation                                   *Deviation          // the prediction with surroundings as they were recorded; nil: none were
 	predicted                                   *model.Trace        // of a record: the prediction at its place, for the chart
 	moved                                       string              // how the slowest place moves, once it was asked for
 	Lever                                       string              // the biggest lever in one sentence, for the page of the operator; "" if none was looked for

@@ -104,6 +104,9 @@ func further(p *workbook.Product, usual *model.History, o model.Options) ([]rule
 
 // calculate makes everything that a product's documents show.
 func (r *runner) calculate(p *workbook.Product) (*report.Product, error) {
+	if r.alone != nil {
+		return r.judgedAlone(p)
+	}
 	out, err := r.judged(p)
 	if err != nil {
 		return nil, err
@@ -122,6 +125,8 @@ func (r *runner) calculate(p *workbook.Product) (*report.Product, error) {
 	for i, e := range out.History.Warnings {
 		out.History.Warnings[i] = p.AsTyped(r.plan.Locate(e))
 	}
+	r.measure(p, out)
+	out.Deviation = r.deviate(p, out)
 	out.Samples = out.History.Sample(r.head.EveryS)
 	out.Lever = r.lever(p, out)
 	return out, nil

@@ -87,7 +87,7 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 		head.Known = append(head.Known, k.KnownAnswer)
 	}
 	head.Products = len(plan.Products)
-	r := &runner{shelf: files, plan: plan, head: head, folder: folder, options: o, names: names, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
+	r := &runner{shelf: files, plan: plan, head: head, logs: newLogs(plan, planFolder(args)), folder: folder, options: o, names: names, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
 	if err := r.all(); err != nil {
 		return &failure{exitFault, err}
 	}
@@ -190,6 +190,17 @@ func readPlan(args []string, o *checkOptions) (plan *workbook.Plan, folder strin
 		folder = o.out
 	}
 	return plan, folder, nil
+}
+
+// planFolder is the folder that the files of a plan lie in; "." for the demo, which has none.
+func planFolder(args []string) string {
+	if len(args) == 0 {
+		return "."
+	}
+	if info, err := os.Stat(args[0]); err == nil && info.IsDir() {
+		return args[0]
+	}
+	return filepath.Dir(args[0])
 }
 
 // beside is the folder of the results when none is named: beside the plan, with its name.
@@ -351,6 +362,8 @@ type runner struct {
 	progress *progressbar.ProgressBar
 	rows     []report.Row
 	advice   []string               // by row: the advice that is not met, a line each
+	logs     *logs                  // the files of records; nil: they are left alone
+	alone    *workbook.Record       // the record that is judged in the place of a prediction; nil: the plan is calculated
 	names    map[string]string      // by product: the file name of its report, without its ending
 	refused  []report.NotCalculated // found while calculating
 	corners  map[cell.Ref]corner    // by row of Limits: where to judge what varies, once it was found; nil: it is looked for
@@ -394,6 +407,14 @@ func (r *runner) all() error {
 		}
 		r.rows, r.advice = append(r.rows, row), append(r.advice, adviceNotMet(d.product))
 		r.warned = append(r.warned, d.product.History.Warnings...)
+		for i := range d.product.Measured {
+			r.warned = append(r.warned, d.product.Measured[i].Problems...)
+		}
+		if v := d.product.Deviation; v != nil {
+			for i := range v.Records {
+				r.warned = append(r.warned, v.Records[i].Problems...)
+			}
+		}
 		return nil
 	}
 	if err := r.each(true, add); err != nil {
@@ -580,7 +601,11 @@ func (r *runner) tell(w io.Writer) {
 	if left := r.head.LeftOutWords(); left != "" {
 		fmt.Fprintln(w, left)
 	}
-	fmt.Fprintf(w, "Calculated from the inputs, not measured; your food authority decides.\nResults in %s\n", r.folder)
+	basis := "Calculated from the inputs, not measured; your food authority decides."
+	if r.alone != nil {
+		basis = "Judged from the record alone; your food authority decides."
+	}
+	fmt.Fprintf(w, "%s\nResults in %s\n", basis, r.folder)
 	if stale := r.shelf.stale(); stale != "" {
 		fmt.Fprintln(w, stale)
 	}
@@ -635,14 +660,14 @@ func weigh(v rules.Verdict) int {
 
 // exit gives the exit code of the run.
 func (r *runner) exit() error {
-	if r.plan.Problems.Faults() > 0 || len(r.head.NotCalculated) > 0 || r.plan.NotImported > 0 {
+	if r.plan.Problems.Faults() > 0 || r.warned.Faults() > 0 || len(r.head.NotCalculated) > 0 || r.plan.NotImported > 0 {
 		return &failure{code: exitInput}
 	}
 	if len(r.rows) == 0 {
 		return &failure{exitInput, errors.New("the plan has no product to calculate")}
 	}
 	for _, row := range r.rows {
-		if row.Verdict != rules.Met {
+		if row.Verdict != rules.Met || row.Measured == rules.NotMet || row.Measured == rules.CannotTell {
 			return &failure{code: exitNotMet}
 		}
 	}

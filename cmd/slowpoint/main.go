@@ -124,6 +124,6 @@ It supports planning; it does not replace measurement. Your food authority decid
 	}
 	root.SetFlagErrorFunc(plainFlag)
 	root.SetHelpCommand(helpCommand())
-	root.AddCommand(checkCommand(files), sizeCommand(files), compareCommand(files), readCommand(), importCommand(files), blankCommand(files), codesCommand(files), foodsCommand(), verifyCommand(), versionCommand())
+	root.AddCommand(checkCommand(files), judgeCommand(files), sizeCommand(files), compareCommand(files), readCommand(), importCommand(files), blankCommand(files), codesCommand(files), foodsCommand(), verifyCommand(), versionCommand())
 	return root
 }

@@ -105,6 +105,8 @@ type reader struct {
 	byName    map[string]*product
 	users     map[string][]*product // by process
 	families  map[string][]*product
+	given     bool     // the row of Records was given to a command, and its columns may be looked for in the file
+	loose     *product // of stages alone, for a record of food that no plan describes; nil: the plan has products
 }
 
 // formulas counts cells of which one thing is told once, such as those of a column that hold the stored result of a formula.
@@ -249,7 +251,7 @@ func (r *reader) finish() {
 		}
 		r.add(bareWrap.problem(w.first, cell.Note, "", model.TightWrap.Name, more))
 	}
-	if len(r.products) == 0 && len(r.unread["Products"]) == 0 {
+	if r.loose == nil && len(r.products) == 0 && len(r.unread["Products"]) == 0 {
 		r.add(noProducts.problem(cell.Ref{Sheet: r.grids["Products"].Name}, cell.Fault, "", ""))
 	}
 	for _, p := range r.products {

@@ -53,14 +53,19 @@ const (
 // Food tells whether it is a temperature of the food.
 func (m Measured) Food() bool { return m != OfMedium }
 
-// Start is when a step began.
+// Start is when a step began, or the chain ended.
 type Start struct {
-	Step  string        // as Steps names it; "" for the first
-	Clock bool          // it is a time of the clock; otherwise it counts from the first reading
-	Date  time.Time     // of a clock with a date; the zero time otherwise
-	After time.Duration // since midnight, or since the first reading
-	Typed string        //
+	Step    string        // as Steps names it; "" for the first
+	End     bool          // of the chain
+	Clock   bool          // it is a time of the clock
+	Elapsed bool          // it counts from the first reading; neither: it is the first reading
+	Date    time.Time     // of a clock with a date; the zero time otherwise
+	After   time.Duration // since midnight, or since the first reading
+	Typed   string
 }
+
+// theEnd is the word for the end of a chain.
+const theEnd = "end"
 
 // readRecords reads the sheet Records.
 func (r *reader) readRecords() {
@@ -70,8 +75,8 @@ func (r *reader) readRecords() {
 	}
 	seen := map[string]int{}
 	for _, l := range t.lines {
-		rec := Record{At: l.Ref(), Name: l.Words("Record"), File: l.Words("File"), Sheet: l.Words("Sheet"), Time: l.Words("Time column"),
-			Temperature: l.Words("Temperature column"), DateOrder: l.Choice("Date order"), Zone: l.Words("Time zone"),
+		rec := Record{At: l.Ref(), Name: l.Words("Record"), File: l.Words("File"), Sheet: l.Words("Sheet"), Time: r.columnOf(l, "Time column"),
+			Temperature: r.columnOf(l, "Temperature column"), DateOrder: l.Choice("Date order"), Zone: l.Words("Time zone"),
 			Sensor: l.Words("Sensor"), Calibrated: l.Words("Calibrated on"), Note: l.Words("Note"), Measured: l.Words("What it measured")}
 		if first := seen[Key(rec.Name)]; first > 0 && rec.Name != "" {
 			l.Fault("Record", rec.Name, duplicate, strconv.Itoa(first), "record")
@@ -104,6 +109,14 @@ func (r *reader) readRecords() {
 	}
 }
 
+// columnOf reads the name of a column of the file; blank only where the row was given to a command.
+func (r *reader) columnOf(l *Line, heading string) string {
+	if r.given && !l.Filled(heading) {
+		return ""
+	}
+	return l.Words(heading)
+}
+
 // within refuses paths that lead out of the plan's folder.
 func (l *Line) within(name string) string {
 	p := strings.ReplaceAll(name, `\`, "/")
@@ -120,6 +133,8 @@ func (r *reader) recorded(l *Line, rec *Record) []*product {
 	rec.Process = process
 	var of []*product
 	switch pr := r.processes[Key(process)]; {
+	case r.loose != nil:
+		of = []*product{r.loose}
 	case name != "":
 		p := r.byName[Key(name)]
 		switch {
@@ -193,18 +208,20 @@ func (r *reader) stepOf(l *Line, heading, name string, of []*product) string {
 	if len(of) == 0 {
 		return ""
 	}
-	pr := r.processes[Key(of[0].Process)]
-	if pr == nil {
-		return ""
+	chain := r.chainOf(of[0])
+	for _, s := range chain {
+		if Key(s) == Key(name) {
+			return s
+		}
 	}
-	if s := pr.by[Key(name)]; s != nil {
-		return s.Name
+	if chain != nil {
+		l.Fault(heading, name, stepUnknown, of[0].Process, meant(name, chain))
 	}
-	l.Fault(heading, name, stepUnknown, pr.name, r.offer(name, pr.stepNames))
 	return ""
 }
 
-// starting understands the column Starts at: a step, a time, or steps with their times, divided by ;.
+// starting understands the column Starts at: a step, a time, or steps with their times, divided by semicolons; end is when the
+// last one ended.
 func (rec *Record) starting(r *reader, l *Line, of []*product) {
 	typed := l.Words("Starts at")
 	if e := l.Entry("Starts at"); e.Kind == Figure && e.Form == Clock {
@@ -213,8 +230,8 @@ func (rec *Record) starting(r *reader, l *Line, of []*product) {
 	if typed == "" || len(of) == 0 {
 		return
 	}
-	pr := r.processes[Key(of[0].Process)]
-	if pr == nil {
+	chain := r.chainOf(of[0])
+	if chain == nil {
 		return
 	}
 	last := -1
@@ -225,15 +242,21 @@ func (rec *Record) starting(r *reader, l *Line, of []*product) {
 		}
 		s := Start{Typed: part}
 		rest := part
-		for _, st := range pr.stepNames() { // the longest name that fits
+		for _, st := range chain { // the longest name that fits
 			if len(st) > len(s.Step) && len(part) >= len(st) && Key(part[:len(st)]) == Key(st) && (len(part) == len(st) || strings.ContainsRune(" ,:=", rune(part[len(st)]))) {
 				s.Step, rest = st, strings.TrimSpace(strings.TrimLeft(part[len(st):], " ,:="))
 			}
 		}
+		if s.Step == "" && strings.HasPrefix(Key(part), theEnd+" ") {
+			s.End, rest = true, strings.TrimSpace(part[len(theEnd):])
+		}
 		rest = strings.TrimPrefix(rest, "at ")
 		at := 0
-		if s.Step != "" {
-			at = slices.Index(pr.stepNames(), s.Step)
+		switch {
+		case s.End:
+			at = len(chain)
+		case s.Step != "":
+			at = slices.Index(chain, s.Step)
 		}
 		switch {
 		case at <= last:
@@ -243,7 +266,7 @@ func (rec *Record) starting(r *reader, l *Line, of []*product) {
 			l.Fault("Starts at", part, recordNoTime)
 			return
 		case rest != "" && !s.when(rest):
-			near := meant(part, pr.stepNames())
+			near := meant(part, chain)
 			l.Fault("Starts at", part, recordStart, near)
 			return
 		}
@@ -272,7 +295,7 @@ func (s *Start) when(text string) bool {
 	if m != nil || v.Computed < 0 {
 		return false
 	}
-	s.After = time.Duration(v.Computed * float64(time.Second))
+	s.Elapsed, s.After = true, time.Duration(v.Computed*float64(time.Second))
 	return true
 }
 

@@ -1,0 +1,255 @@
+package main
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"slowpoint/cmd/slowpoint/record"
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/report"
+	"slowpoint/rules"
+)
+
+// simplifyK is how far the straight lines of a course may lie from the readings that they stand for, K: less than any air logger can tell.
+const simplifyK = 0.05
+
+// medium is the record of the surroundings of a step, ready to be calculated with.
+type medium struct {
+	step              int
+	durationS         float64
+	nominal, low, top model.Course // as read, and the bounds that gaps and the accuracy of the instrument allow
+	bounded           bool         // the bounds differ from the readings
+}
+
+// deviate calculates a product with the surroundings that were recorded. It is nil if none were, or none could be used; the problems are
+// told either way.
+func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Deviation {
+	if r.logs == nil {
+		return nil
+	}
+	v := &report.Deviation{WithinK: simplifyK}
+	var media []*medium
+	for i := range r.plan.Records {
+		rec := &r.plan.Records[i]
+		if !rec.Sound || rec.Of != workbook.OfMedium || !slices.ContainsFunc(rec.Products, func(q *workbook.Product) bool { return q.Name == p.Name }) {
+			continue
+		}
+		m, air := r.surroundings(rec, p, out)
+		v.Records, v.Steps = append(v.Records, *m), append(v.Steps, rec.Step)
+		if air == nil {
+			continue
+		}
+		if k := slices.IndexFunc(media, func(b *medium) bool { return b.step == air.step }); k >= 0 {
+			v.Records[len(v.Records)-1].Problems.Add(*fault(rec, "What it measured", rec.Measured, "is recorded twice for "+p.Name, "keep one of the records"))
+			continue
+		}
+		media = append(media, air)
+	}
+	if len(v.Records) == 0 {
+		return nil
+	}
+	if len(media) == 0 {
+		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "the record could not be used"}
+		return v
+	}
+	run := func(of func(*medium) model.Course) (*report.Product, error) {
+		q := *p
+		q.Steps = append([]model.Step(nil), p.Steps...)
+		q.Spreads = nil
+		for _, s := range p.Spreads {
+			if s.Of.Name != "medium temperature" || !slices.ContainsFunc(media, func(m *medium) bool { return s.Step == m.step }) {
+				q.Spreads = append(q.Spreads, s)
+			}
+		}
+		for _, m := range media {
+			st := &q.Steps[m.step]
+			st.Medium, st.Measured, st.DurationS = of(m), true, m.durationS
+			st.Medium.RH = nil
+		}
+		return r.judgedBy(&q, model.Options{})
+	}
+	after, err := run(func(m *medium) model.Course { return m.nominal })
+	if err != nil {
+		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "it cannot be calculated: " + oneLine(err)}
+		return v
+	}
+	v.History = after.History
+	findings := after.Judgement.Findings
+	if slices.ContainsFunc(media, func(m *medium) bool { return m.bounded }) {
+		for _, of := range []func(*medium) model.Course{func(m *medium) model.Course { return m.low }, func(m *medium) model.Course { return m.top }} {
+			bound, err := run(of)
+			if err != nil {
+				v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "its bounds cannot be calculated: " + oneLine(err)}
+				return v
+			}
+			for i := range findings {
+				if i < len(bound.Judgement.Findings) && rules.Worse(&bound.Judgement.Findings[i], &findings[i]) {
+					findings[i] = bound.Judgement.Findings[i]
+				}
+			}
+		}
+	}
+	for i := range findings {
+		findings[i].Run = ""
+	}
+	v.Judgement = rules.Conclude(findings, r.plan.Groups)
+	return v
+}
+
+// surroundings reads the record of a medium for a product.
+func (r *runner) surroundings(rec *workbook.Record, p *workbook.Product, out *report.Product) (*report.Measured, *medium) {
+	m := describe(rec)
+	log, problems := r.logs.read[rec]()
+	m.Problems = problems
+	if log == nil {
+		return m, nil
+	}
+	facts(m, log)
+	air, wrong := mediumOf(rec, log, p, lengthsOf(p.Steps, out.History), m)
+	if wrong != nil {
+		m.Problems = append(m.Problems, *wrong)
+		return m, nil
+	}
+	return m, air
+}
+
+// mediumOf makes the course of a step of a record. The record must cover the step, which is as long as the row says, else as the plan
+// has it; lengths are those of the plan, s.
+func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, lengths []float64, m *report.Measured) (*medium, *cell.Error) {
+	air := &medium{step: stepNamed(p.Steps, rec.Step)}
+	st := &p.Steps[air.step]
+	if len(st.Medium.TimesS) == 0 {
+		return nil, fault(rec, "What it measured", rec.Measured, st.Name+" has no surroundings with a temperature", "name another step")
+	}
+	from, to, ended := 0.0, 0.0, false
+	at := 0.0
+	for _, s := range rec.Starts {
+		t, wrong := startOf(rec, log, &s, at)
+		if wrong != nil {
+			return nil, wrong
+		}
+		i := air.step // a time without a step is that of the record's own
+		if s.Step != "" {
+			i = stepNamed(p.Steps, s.Step)
+		}
+		if s.End {
+			i = len(p.Steps)
+		}
+		switch {
+		case i == air.step:
+			from = t
+		case i == air.step+1:
+			to, ended = t, true
+		}
+		at = t
+	}
+	air.durationS = lengths[air.step]
+	if ended {
+		air.durationS = to - from
+	}
+	to = from + air.durationS
+	last := log.TimesS[len(log.TimesS)-1]
+	reach := max(1.5*log.StepS, 1) // the course of the last reading goes on for one more
+	if to > last+reach {
+		return nil, fault(rec, "File", rec.File, fmt.Sprintf("ends at %s, and %s needs it up to %s", shown(log, last), st.Name, shown(log, to)), "write when the step began and ended in Starts at, or give the whole file")
+	}
+	if air.durationS <= 0 {
+		return nil, fault(rec, "Starts at", "", st.Name+" has no length by it", "correct it")
+	}
+	air.fill(log, from, to, errorOf(rec, log), m)
+	return air, nil
+}
+
+// fill makes the courses of the readings between two instants, s from the first.
+func (air *medium) fill(log *record.Log, from, to, errorK float64, m *report.Measured) {
+	i := 0
+	for i+1 < len(log.TimesS) && log.TimesS[i+1] <= from {
+		i++
+	}
+	j := i
+	for j+1 < len(log.TimesS) && log.TimesS[j] < to {
+		j++
+	}
+	m.Readings, m.Before, m.After = j-i+1, i, len(log.TimesS)-1-j
+	lowest, highest := slices.Min(log.C[i:j+1]), slices.Max(log.C[i:j+1])
+	gap := map[int]bool{}
+	for _, g := range log.Gaps {
+		if g >= i && g < j {
+			gap[g] = true
+			m.Gaps = append(m.Gaps, [2]float64{log.TimesS[g] - from, log.TimesS[g+1] - from})
+		}
+	}
+	air.bounded = errorK > 0 || len(gap) > 0
+	of := func(shift float64, bound float64) model.Course {
+		c := model.Course{Name: m.Name}
+		add := func(t, x float64) {
+			if n := len(c.TimesS); n > 0 && t <= c.TimesS[n-1] {
+				t = math.Nextafter(c.TimesS[n-1]+1e-3, math.Inf(1))
+			}
+			c.TimesS, c.C = append(c.TimesS, t), append(c.C, x)
+		}
+		value := func(t float64, k int) float64 { // between readings k and k+1
+			if k+1 >= len(log.TimesS) {
+				return log.C[k]
+			}
+			f := min(max((t-log.TimesS[k])/(log.TimesS[k+1]-log.TimesS[k]), 0), 1)
+			return log.C[k] + f*(log.C[k+1]-log.C[k])
+		}
+		add(0, value(from, i)+shift)
+		for k := i; k <= j; k++ {
+			if t := log.TimesS[k] - from; t > 0 && t < to-from {
+				add(t, log.C[k]+shift)
+			}
+			if gap[k] && !math.IsNaN(bound) {
+				a, b := max(log.TimesS[k]-from, 0), min(log.TimesS[k+1]-from, to-from)
+				add(a+1e-3, bound+shift)
+				add(b-1e-3, bound+shift)
+			}
+		}
+		add(to-from, value(to, j-1+btoi(j == i))+shift)
+		return simplified(c)
+	}
+	air.nominal = of(0, math.NaN())
+	air.low, air.top = of(-errorK, lowest), of(errorK, highest)
+}
+
+func btoi(b bool) int {
+	if b {
+		return 1
+	}
+	return 0
+}
+
+// simplified drops the rows of a course that straight lines between the others pass within simplifyK (Ramer, Douglas and Peucker's method).
+func simplified(c model.Course) model.Course {
+	n := len(c.TimesS)
+	keep := make([]bool, n)
+	keep[0], keep[n-1] = true, true
+	type part struct{ from, to int }
+	todo := []part{{0, n - 1}}
+	for len(todo) > 0 {
+		p := todo[len(todo)-1]
+		todo = todo[:len(todo)-1]
+		far, at := 0.0, -1
+		for i := p.from + 1; i < p.to; i++ {
+			f := (c.TimesS[i] - c.TimesS[p.from]) / (c.TimesS[p.to] - c.TimesS[p.from])
+			if d := math.Abs(c.C[i] - c.C[p.from] - f*(c.C[p.to]-c.C[p.from])); d > far {
+				far, at = d, i
+			}
+		}
+		if far > simplifyK {
+			keep[at] = true
+			todo = append(todo, part{p.from, at}, part{at, p.to})
+		}
+	}
+	out := model.Course{Name: c.Name}
+	for i := range keep {
+		if keep[i] {
+			out.TimesS, out.C = append(out.TimesS, c.TimesS[i]), append(out.C, c.C[i])
+		}
+	}
+	return out
+}

@@ -1,0 +1,452 @@
+package main
+
+import (
+	"fmt"
+	"math"
+	"path/filepath"
+	"strings"
+	"sync"
+	"time"
+
+	"slowpoint/cmd/slowpoint/record"
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model"
+	"slowpoint/model/cell"
+	"slowpoint/report"
+	"slowpoint/rules"
+)
+
+// logs are the files of loggers, each read when it is first asked for.
+type logs struct {
+	folder string // of the plan
+	read   map[*workbook.Record]func() (*record.Log, cell.Errors)
+}
+
+// newLogs makes ready to read the records of a plan that lies in a folder.
+func newLogs(plan *workbook.Plan, folder string) *logs {
+	l := &logs{folder: folder, read: map[*workbook.Record]func() (*record.Log, cell.Errors){}}
+	for i := range plan.Records {
+		rec := &plan.Records[i]
+		if rec.Sound {
+			l.read[rec] = sync.OnceValues(func() (*record.Log, cell.Errors) { return l.open(rec) })
+		}
+	}
+	return l
+}
+
+// open reads the file of a record.
+func (l *logs) open(rec *workbook.Record) (*record.Log, cell.Errors) {
+	path := filepath.Join(l.folder, filepath.FromSlash(rec.File))
+	if whole, err := filepath.EvalSymlinks(path); err == nil { // a link may lead out of the folder
+		if home, err := filepath.EvalSymlinks(l.folder); err == nil {
+			if way, err := filepath.Rel(home, whole); err != nil || !filepath.IsLocal(way) {
+				return nil, cell.Errors{{At: rec.Cells["File"], Field: "File", Typed: rec.File, Msg: "is a link that leads out of the plan's folder, from which alone records are read", Hint: "put the file itself into the folder of the plan"}}
+			}
+		}
+	}
+	return record.Read(settingOf(rec, path))
+}
+
+// settingOf is how the file of a record is to be read.
+func settingOf(rec *workbook.Record, path string) record.Setting {
+	s := record.Setting{File: path, Name: rec.File, Sheet: rec.Sheet, Time: rec.Time, Temperature: rec.Temperature, DateOrder: rec.DateOrder,
+		Zone: rec.Zone, Decimal: rec.Decimal, Missing: rec.Missing, Corrections: rec.CorrectionK, Cells: rec.Cells}
+	if rec.AccuracyK != nil {
+		s.AccuracyK = *rec.AccuracyK
+	}
+	return s
+}
+
+// run is the steps of a chain as a record has them.
+type ran struct {
+	first  int       // the first step that it covers
+	startS []float64 // of each covered step, s from the first reading; and behind the last its end
+	shownS float64   // time of the first reading on the clock of the chain
+}
+
+// fault is a mistake in a cell of a record's row.
+func fault(rec *workbook.Record, heading, typed, msg, hint string) *cell.Error {
+	return &cell.Error{At: rec.Cells[heading], Field: heading, Typed: typed, Msg: msg, Hint: hint}
+}
+
+// laidOut says when the steps of a product began by a record: as its row says, else as long as the plan has them. lengths are those of
+// the plan, s.
+func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths []float64) (*ran, *cell.Error) {
+	given := map[int]float64{} // by step
+	end, at := log.TimesS[len(log.TimesS)-1], 0.0
+	r := &ran{}
+	for n, s := range rec.Starts {
+		i := 0
+		if s.Step != "" {
+			i = stepNamed(steps, s.Step)
+		}
+		if s.End {
+			i = len(steps)
+		}
+		t, wrong := startOf(rec, log, &s, at)
+		if wrong != nil {
+			return nil, wrong
+		}
+		if n > 0 && t <= at {
+			return nil, fault(rec, "Starts at", s.Typed, "is no later than the step before it", "write the steps in their order")
+		}
+		if t > end {
+			return nil, fault(rec, "Starts at", s.Typed, fmt.Sprintf("lies outside the readings, which go from %s to %s", shown(log, 0), shown(log, end)), "correct the time, or the file")
+		}
+		if n == 0 {
+			r.first = i
+		}
+		given[i], at = t, t
+	}
+	if len(rec.Starts) == 0 {
+		given[0] = 0
+	}
+	if r.first >= len(steps) {
+		return nil, fault(rec, "Starts at", rec.Starts[0].Typed, "says when the chain ended, and not when it began", "write a step before it: Oven 09:12; end 13:30")
+	}
+	if e, ok := given[len(steps)]; ok {
+		end = e
+	}
+	t := given[r.first]
+	for i := r.first; i < len(steps); i++ {
+		if g, ok := given[i]; ok {
+			t = g
+		} else if later := nextGiven(given, i, len(steps)); later >= 0 && t >= given[later] {
+			return nil, fault(rec, "Starts at", "", fmt.Sprintf("%s would begin by the plan's durations at %s, which is after %s began", steps[i].Name, shown(log, t), nameOf(steps, later)), "write when it began: Oven 09:12; Rest 11:02; Chill 11:20")
+		}
+		if t >= end {
+			break
+		}
+		r.startS = append(r.startS, t)
+		t += lengths[i]
+	}
+	r.startS = append(r.startS, end)
+	r.shownS = -r.startS[0]
+	if len(r.startS) < 2 {
+		return nil, fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it")
+	}
+	return r, nil
+}
+
+// nextGiven is the next step whose beginning is known; −1 if there is none.
+func nextGiven(given map[int]float64, i, n int) int {
+	for k := i + 1; k <= n; k++ {
+		if _, ok := given[k]; ok {
+			return k
+		}
+	}
+	return -1
+}
+
+func nameOf(steps []model.Step, i int) string {
+	if i >= len(steps) {
+		return "the end"
+	}
+	return steps[i].Name
+}
+
+// stepNamed finds a step; 0 if there is none of that name, which the reader told.
+func stepNamed(steps []model.Step, name string) int {
+	for i := range steps {
+		if workbook.Key(steps[i].Name) == workbook.Key(name) {
+			return i
+		}
+	}
+	return 0
+}
+
+const day = 24 * time.Hour
+
+// startOf is a start in s from the first reading; after is the one before it.
+func startOf(rec *workbook.Record, log *record.Log, s *workbook.Start, after float64) (float64, *cell.Error) {
+	switch {
+	case s.Typed != "" && !s.Clock && !s.Elapsed: // a step alone: at the first reading
+		return 0, nil
+	case s.Elapsed:
+		return s.After.Seconds(), nil
+	case log.Start.IsZero():
+		return 0, fault(rec, "Starts at", s.Typed, "is a time of the clock, and the file has none", "write the time after the first reading, such as 20 min")
+	case !s.Date.IsZero() && !log.Dated:
+		return 0, fault(rec, "Starts at", s.Typed, "has a date, and the file has none", "write the clock alone")
+	case !s.Date.IsZero():
+		y, m, d := s.Date.Date()
+		t := time.Date(y, m, d, 0, 0, 0, 0, log.Start.Location()).Add(s.After).Sub(log.Start).Seconds()
+		if t < 0 {
+			return 0, fault(rec, "Starts at", s.Typed, "is before the first reading, at "+shown(log, 0), "correct the time, or the file")
+		}
+		return t, nil
+	}
+	end := log.TimesS[len(log.TimesS)-1]
+	if log.Dated && end > day.Seconds() {
+		return 0, fault(rec, "Starts at", s.Typed, "has no date, and the record is longer than a day", "write the date too, as 2026-11-03 09:12")
+	}
+	h, m, sec := log.Start.Clock()
+	t := (s.After - time.Duration(h)*time.Hour - time.Duration(m)*time.Minute - time.Duration(sec)*time.Second).Seconds()
+	for t < after {
+		t += day.Seconds()
+	}
+	if t > end {
+		return 0, fault(rec, "Starts at", s.Typed, fmt.Sprintf("lies outside the readings, which go from %s to %s", shown(log, 0), shown(log, end)), "correct the time, or the file")
+	}
+	return t, nil
+}
+
+// shown writes a time of a record as its file has it.
+func shown(log *record.Log, s float64) string {
+	switch t := log.Start.Add(time.Duration(s * float64(time.Second))); {
+	case log.Start.IsZero():
+		return report.Duration(s) + " after the first reading"
+	case log.Dated:
+		return t.Format("2006-01-02 15:04:05")
+	default:
+		return t.Format("15:04:05")
+	}
+}
+
+// measure judges the records of a product beside its prediction.
+func (r *runner) measure(p *workbook.Product, out *report.Product) {
+	if r.logs == nil {
+		return
+	}
+	for i := range r.plan.Records {
+		rec := &r.plan.Records[i]
+		if rec.Sound && rec.Of.Food() && rec.Products[0].Name == p.Name {
+			out.Measured = append(out.Measured, *r.measured(rec, p, out))
+		}
+	}
+}
+
+// lengthsOf are how long the steps are: in the prediction where there is one, for steps may end at a temperature.
+func lengthsOf(steps []model.Step, h *model.History) []float64 {
+	out := make([]float64, len(steps))
+	for i := range steps {
+		out[i] = steps[i].DurationS
+		if h != nil && !h.Recorded && i < len(h.Spans) {
+			out[i] = h.Spans[i].EndS - h.Spans[i].StartS
+		}
+	}
+	return out
+}
+
+// describe is what the row of a record says.
+func describe(rec *workbook.Record) *report.Measured {
+	return &report.Measured{Name: rec.Name, What: rec.Measured, At: rec.At, File: rec.File, Sensor: rec.Sensor, Calibrated: rec.Calibrated, Note: rec.Note,
+		AccuracyK: rec.AccuracyK, CorrectionK: rec.CorrectionK}
+}
+
+// facts are what its file says.
+func facts(m *report.Measured, log *record.Log) {
+	m.File, m.SHA256, m.Sheet, m.Column, m.Unit = log.Name, log.SHA256, log.Sheet, log.Head, log.Unit
+	m.ResolutionK, m.StepS, m.Missing, m.Doubtful, m.About = log.ResolutionK, log.StepS, log.Missing, len(log.Doubtful), log.About
+	for _, e := range log.Echo {
+		m.Echo = append(m.Echo, report.EchoRow{Line: int(e.Line), Time: e.Time, Read: e.Read, S: e.S, C: e.C})
+	}
+	if !log.Start.IsZero() {
+		m.Begins = shown(log, 0)
+	}
+}
+
+// errorOf is by how much a reading may be off: the accuracy of the instrument and half of its resolution, K.
+func errorOf(rec *workbook.Record, log *record.Log) float64 {
+	if rec.AccuracyK == nil {
+		return log.ResolutionK / 2
+	}
+	return *rec.AccuracyK + log.ResolutionK/2
+}
+
+// measured reads, judges and compares one record. out is the prediction; nil if there is none.
+func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report.Product) *report.Measured {
+	m := describe(rec)
+	log, problems := r.logs.read[rec]()
+	m.Problems = problems
+	if log == nil {
+		return m
+	}
+	facts(m, log)
+	var predicted *model.History
+	if out != nil {
+		predicted = out.History
+	}
+	way, wrong := laidOut(rec, log, p.Steps, lengthsOf(p.Steps, predicted))
+	if wrong != nil {
+		m.Problems = append(m.Problems, *wrong)
+		return m
+	}
+	re, lines := recording(rec, log, p, way, m)
+	if len(re.TimesS) == 0 {
+		m.Problems.Add(*fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it"))
+		return m
+	}
+	findings, err := rules.FindRecorded(r.plan.Limits, rules.Recorded{Product: p.Name, Family: p.Family, Recording: re})
+	if err != nil {
+		m.Problems.Add(cell.Error{At: rec.At, Msg: "The record cannot be judged: " + err.Error()})
+		return m
+	}
+	m.History, err = re.Line()
+	if err != nil {
+		m.Problems.Add(cell.Error{At: rec.At, Msg: "The record cannot be judged: " + err.Error()})
+		return m
+	}
+	for i := range findings {
+		if f := &findings[i]; f.AtS != nil {
+			f.Cells = append(f.Cells, placeIn(log, re, lines, *f.AtS))
+		}
+	}
+	m.Judgement = rules.Conclude(findings, r.plan.Groups)
+	if out != nil {
+		r.compare(rec, p, out, way, re, m)
+	}
+	return m
+}
+
+// recording is what a log says of a product on the clock of its chain, and the line of the file of each reading.
+func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *ran, m *report.Measured) (re *model.Recording, lines []int32) {
+	re = &model.Recording{Point: model.Point{At: rec.At, Name: rec.Measured, Place: rec.Place.Place}, Surface: rec.Of == workbook.AtSurface, LowC: math.NaN(), HighC: math.NaN(),
+		ErrorK: errorOf(rec, log)}
+	if re.Surface {
+		re.Name = "surface"
+	}
+	zero, end := way.startS[0], way.startS[len(way.startS)-1]
+	for i := 0; i+1 < len(way.startS); i++ {
+		re.Spans = append(re.Spans, model.Span{Step: &p.Steps[way.first+i], StartS: way.startS[i] - zero, EndS: way.startS[i+1] - zero})
+	}
+	const tiny = 1e-6
+	from, to := 0, len(log.TimesS)
+	for from < to && log.TimesS[from] < zero-tiny {
+		from++
+	}
+	for to > from && log.TimesS[to-1] > end+tiny {
+		to--
+	}
+	m.Before, m.After, m.Readings = from, len(log.TimesS)-to, to-from
+	re.C, lines = log.C[from:to:to], log.Lines[from:to]
+	re.TimesS = log.TimesS[from:to:to]
+	if zero != 0 {
+		re.TimesS = make([]float64, to-from)
+		for i := range re.TimesS {
+			re.TimesS[i] = max(log.TimesS[from+i]-zero, 0)
+		}
+	}
+	for _, g := range log.Gaps {
+		if g >= from && g+1 < to {
+			re.Gaps = append(re.Gaps, g-from)
+			m.Gaps = append(m.Gaps, [2]float64{re.TimesS[g-from], re.TimesS[g-from+1]})
+		}
+	}
+	for _, d := range log.Doubtful {
+		if d >= from && d < to {
+			re.Doubted = append(re.Doubted, d-from)
+		}
+	}
+	return re, lines
+}
+
+// placeIn names the reading that lies nearest to an instant.
+func placeIn(log *record.Log, re *model.Recording, lines []int32, t float64) cell.Ref {
+	lo, hi := 0, len(re.TimesS)
+	for lo < hi {
+		if mid := (lo + hi) / 2; re.TimesS[mid] < t {
+			lo = mid + 1
+		} else {
+			hi = mid
+		}
+	}
+	if lo == len(re.TimesS) || lo > 0 && t-re.TimesS[lo-1] < re.TimesS[lo]-t {
+		lo--
+	}
+	return cell.Ref{Sheet: fmt.Sprintf("%s line %d", log.Name, lines[lo])}
+}
+
+// mostCompared is at how many readings a record is held against the prediction.
+const mostCompared = 2000
+
+// compare holds a record against the prediction with the steps as long as they were.
+func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.Product, way *ran, re *model.Recording, m *report.Measured) {
+	if rec.Of == workbook.AtOther {
+		return
+	}
+	steps := append([]model.Step(nil), p.Steps...)
+	before := 0.0
+	for i, s := range lengthsOf(p.Steps, out.History) {
+		if i < way.first {
+			steps[i].DurationS, steps[i].UntilC = s, nil
+			before += s
+		}
+	}
+	for i := 0; i+1 < len(way.startS); i++ {
+		steps[way.first+i].DurationS, steps[way.first+i].UntilC = way.startS[i+1]-way.startS[i], nil
+	}
+	steps = steps[:way.first+len(way.startS)-1]
+	h, err := model.Solve(p.Product, steps, model.Options{})
+	if err != nil {
+		m.Problems.Add(cell.Error{At: rec.At, Level: cell.Note, Msg: "The record was not compared with the prediction, which cannot be made for steps as long as they were: " + oneLine(err)})
+		return
+	}
+	a := &report.Against{Place: rec.Place.Place, PlaceName: rec.Measured}
+	slowest := slowestPlace(h)
+	switch rec.Of {
+	case workbook.AtSlowest:
+		a.Place = slowest
+	case workbook.AtSurface:
+		var ok bool
+		if a.Place, ok = report.SurfacePlace(&p.Product); !ok {
+			return
+		}
+	}
+	stride := max(1, (len(re.TimesS)+mostCompared-1)/mostCompared)
+	var c []float64
+	for i := 0; i < len(re.TimesS); i += stride {
+		a.TimesS, c = append(a.TimesS, re.TimesS[i]), append(c, re.C[i])
+	}
+	on := make([]float64, len(a.TimesS))
+	for i, t := range a.TimesS {
+		on[i] = before + t
+	}
+	a.C = make([]float64, len(on))
+	h.Course(a.Place, on, a.C)
+	a.Readings = len(on)
+	slow := make([]float64, len(on))
+	h.Course(slowest, on, slow)
+	k := 0
+	for i := range on {
+		d := c[i] - a.C[i]
+		a.BiasK += d / float64(len(on))
+		a.RMSK += d * d / float64(len(on))
+		for k+1 < len(re.Spans) && a.TimesS[i] > re.Spans[k].EndS {
+			k++
+		}
+		heats := re.Spans[k].Step.Stage != nil && re.Spans[k].Step.Stage.Heats
+		beyond := slow[i] - a.C[i]
+		if heats {
+			beyond = -beyond
+			if -d > a.ColderK {
+				a.ColderK, a.ColderS = -d, a.TimesS[i]
+			}
+		} else if d > a.WarmerK {
+			a.WarmerK, a.WarmerS = d, a.TimesS[i]
+		}
+		if rec.Of == workbook.AtPoint && beyond > a.SlowestK {
+			a.SlowestK, a.SlowestS = beyond, a.TimesS[i]
+		}
+	}
+	a.RMSK = math.Sqrt(a.RMSK)
+	m.Against = a
+}
+
+// slowestPlace is the coldest place at the end of the last step that heats, or the warmest at the end of a chain without one.
+func slowestPlace(h *model.History) model.Place {
+	at, cold := h.EndS(), false
+	for _, sp := range h.Spans {
+		if sp.Step.Stage != nil && sp.Step.Stage.Heats {
+			at, cold = sp.EndS, true
+		}
+	}
+	s := h.SampleAt([]float64{at})
+	if cold {
+		return s.ColdestAt[0]
+	}
+	return s.HottestAt[0]
+}
+
+// oneLine is an error without its line ends.
+func oneLine(err error) string { return strings.Join(strings.Fields(err.Error()), " ") }
