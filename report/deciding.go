@@ -191,11 +191,11 @@ type Row struct {
 	Deciding         string   // the limit that settles the verdict
 	MarginK          *float64 // of the deciding limit
 	MarginS          *float64
-	MarginPlace      string        // the place of MarginK where it is not the deciding one; "" elsewhere
-	Beside           string        // what must be read with the verdict, in sentences; Why ends with it
-	Problems         int           // warnings that touch the product
-	Measured         rules.Verdict // the worst of its records; NotApplicable: it has none
-	File             string        // name of its document; set by whoever names the files
+	MarginPlace      string         // the place of MarginK where it is not the deciding one; "" elsewhere
+	Beside           string         // what must be read with the verdict, in sentences; Why ends with it
+	Problems         int            // warnings that touch the product
+	Measured         *rules.Verdict // the worst of its records; nil: it has none
+	File             string         // name of its document; set by whoever names the files
 	tight            float64
 }
 

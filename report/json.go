@@ -174,6 +174,14 @@ type (
 		Against    *againstJSON    `json:"against_prediction,omitempty"`
 		Problems   []problemJSON   `json:"problems"`
 	}
+	deviationJSON struct {
+		Records  []recordJSON    `json:"records"`
+		Verdict  string          `json:"verdict"`
+		Why      string          `json:"why"`
+		Within   json.RawMessage `json:"simplified_within_K"`
+		Findings []findingJSON   `json:"findings"`
+		Groups   []groupJSON     `json:"groups"`
+	}
 	againstJSON struct {
 		Place    string          `json:"place"`
 		AtMM     json.RawMessage `json:"at_mm"`
@@ -252,6 +260,10 @@ func (j *JSON) Add(p *Product) error {
 	list(j, "groups", groupsOf(p.Judgement.Groups), false)
 	if len(p.Measured) > 0 {
 		list(j, "records", recordsOf(p), false)
+	}
+	if v := p.Deviation; v != nil {
+		j.value("as_recorded", deviationJSON{Records: recordsIn(v.Records), Verdict: overall(v.Judgement.Verdict).String(), Why: v.Judgement.Why,
+			Within: exactNumber(&v.WithinK), Findings: findingsOf(v.Judgement.Findings), Groups: groupsOf(v.Judgement.Groups)})
 	}
 	list(j, "cautions", cautionsOf(Cautions(j.h, p)), false)
 	list(j, "input", readingsOf(p.Readings), true)
@@ -592,10 +604,12 @@ func findingsOf(fs []rules.Finding) []findingJSON {
 }
 
 // recordsOf are the records of a product.
-func recordsOf(p *Product) []recordJSON {
-	out := make([]recordJSON, 0, len(p.Measured))
-	for i := range p.Measured {
-		m := &p.Measured[i]
+func recordsOf(p *Product) []recordJSON { return recordsIn(p.Measured) }
+
+func recordsIn(ms []Measured) []recordJSON {
+	out := make([]recordJSON, 0, len(ms))
+	for i := range ms {
+		m := &ms[i]
 		one := recordJSON{Record: m.Name, At: m.At.String(), What: m.What, File: m.File, SHA256: m.SHA256, Sheet: m.Sheet, Column: m.Column, Unit: m.Unit,
 			Begins: m.Begins, Verdict: overall(m.verdict()).String(), Readings: m.Readings, Step: exactNumber(&m.StepS), Resolution: exactNumber(&m.ResolutionK),
 			Accuracy: exactNumber(m.AccuracyK), Correction: exactNumber(&m.CorrectionK), Missing: m.Missing, Doubtful: m.Doubtful, Before: m.Before, After: m.After,

@@ -536,15 +536,24 @@ func recordColumns(h *Head) []gridColumn {
 
 // addRecords writes a row for each finding on a record, beside that on the prediction; its cells stand in the order of recordColumns.
 func (b *Workbook) addRecords(p *Product) {
-	if len(p.Measured) == 0 {
+	all := p.Measured
+	if v := p.Deviation; v != nil {
+		one := Measured{Name: v.names(), What: say("deviated title"), Judgement: v.Judgement, History: v.History}
+		if len(v.Records) == 1 {
+			one = v.Records[0]
+			one.Judgement, one.History = v.Judgement, v.History
+		}
+		all = append(append([]Measured(nil), all...), one)
+	}
+	if len(all) == 0 {
 		return
 	}
 	if b.records == nil {
 		b.records = newGrid("Records", recordColumns(b.h), b.h.Paper, b.names)
 	}
 	g, perK := b.records, b.h.perK()
-	for i := range p.Measured {
-		m := &p.Measured[i]
+	for i := range all {
+		m := &all[i]
 		fs := m.Judgement.Findings
 		if len(fs) == 0 {
 			fs = []rules.Finding{{Verdict: m.verdict(), Why: m.Judgement.Why, Limit: &rules.Limit{}}}

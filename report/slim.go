@@ -36,18 +36,18 @@ func slimOf(h *Head, p *Product, order int) slim {
 
 // worst is the less favourable of what was predicted and what was measured.
 func (r *Row) worst() rules.Verdict {
-	if weight(r.Measured) < weight(r.Verdict) {
-		return r.Measured
+	if r.Measured != nil && weight(*r.Measured) < weight(r.Verdict) {
+		return *r.Measured
 	}
 	return r.Verdict
 }
 
 // Words is the verdict in words, and the worst of the records beside it.
 func (r *Row) Words(word func(rules.Verdict) string) string {
-	if r.Measured == rules.NotApplicable {
+	if r.Measured == nil {
 		return word(overall(r.Verdict))
 	}
-	return say("verdict beside record", word(overall(r.Verdict)), word(r.Measured))
+	return say("verdict beside record", word(overall(r.Verdict)), word(*r.Measured))
 }
 
 // overall is the verdict of a product: one of three words.
@@ -63,7 +63,7 @@ func overall(v rules.Verdict) rules.Verdict {
 func listed(ns []NotCalculated, rows []slim) []slim {
 	out := make([]slim, 0, len(ns)+len(rows))
 	for _, n := range ns {
-		s := slim{Row: Row{Product: n.Product, tight: math.Inf(1), Measured: rules.NotApplicable}, at: n.At}
+		s := slim{Row: Row{Product: n.Product, tight: math.Inf(1)}, at: n.At}
 		if len(n.Because) > 0 {
 			s.Why = n.Because[0].Error()
 		}

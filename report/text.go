@@ -33,85 +33,87 @@ func NewText(w io.Writer, h *Head) *Text {
 
 // textWords are the texts that only report.txt has.
 var textWords = map[string]string{
-	"title":          "slowpoint: calculated temperatures held against the limits that the user entered",
-	"order":          "This text says the same as the PDF reports. First the plan, then all products with their verdicts, then each product, then the known-answer cases and the words used.",
-	"courses":        "The whole courses of temperature are in results.xlsx and results.json.",
-	"rounding":       "Temperatures stand in the user's unit first, with the other unit in brackets. Results are rounded to the unfavourable side; limits are not rounded.",
-	"plan":           "Plan",
-	"file":           "File: %s",
-	"digest":         "SHA-256 of the file: %s",
-	"source":         "Made by the import from: %s, SHA-256 %s",
-	"version":        "Program: slowpoint %s",
-	"date":           "Date: %s",
-	"item":           "%s: %s",
-	"blank":          "(blank)",
-	"problems":       "Problems in the plan",
-	"no problems":    "None.",
-	"problem":        "%s, %s",
-	"refused":        "Products that could not be calculated",
-	"refused one":    "%s (%s)",
-	"list":           "All products, the most urgent first",
-	"list part":      "The products of this run, the most urgent first",
-	"list none":      "No product was calculated.",
-	"list one":       "%d. %s: %s.",
-	"list deciding":  " Deciding limit: %s.",
-	"list room":      " Margin: %s.",
-	"list why":       " Why: %s",
-	"list cautions":  " Cautions: %d.",
-	"product":        "Product %d: %s",
-	"verdict":        "Verdict: %s. %s",
-	"what":           "What was calculated",
-	"limits":         "Limits, the most urgent first",
-	"limits none":    "No limit was judged.",
-	"group":          "Group %s (%s): %s.",
-	"group by":       " Decided by %s.",
-	"limit":          "Limit %d: %s: %s",
-	"properties":     "%s at %s: conductivity %s W/(m·K), density %s kg/m³, specific heat %s J/(kg·K)",
-	"properties ice": ", ice %s",
-	"limit low":      " (second run, at 0.9 of the conductivity)",
-	"limit mixed":    " (run as well mixed)",
-	"limit worst":    " (at its unfavourable ends)",
-	"measured":       "Measured (the user's own records)",
-	"record":         "Record %s",
-	"record limit":   "Record %s, limit %s: %s",
-	"drivers":        "What drives each margin",
-	"drivers of":     "%s",
-	"driver":         "%d. %s. %s. Basis: %s",
-	"course":         "Course of temperature",
-	"recorded":       "These temperatures were measured.",
-	"predicted":      "These temperatures were calculated, not measured.",
-	"step":           "%s, %s to %s",
-	"step medium":    "surroundings at the end %s",
-	"coldest":        "coldest at the end %s (%s)",
-	"hottest":        "hottest at the end %s (%s)",
-	"mean":           "mean at the end %s",
-	"point":          "%s at the end %s",
-	"deciding":       "where the tightest limit is decided (%s) at the end %s",
-	"moves":          "How the slowest place moves",
-	"lever":          "The biggest lever",
-	"profile":        "Profile through the product",
-	"factors":        "What the numbers rest on",
-	"factor":         "%s: %s",
-	"factor from":    " (from: %s)",
-	"method":         "Method: %s.",
-	"error":          "Error estimate: %s at any place, from %s after each change of surroundings%s.",
-	"interval":       "Courses are written every %s and at each change of step; limits are judged from the field itself, not from this interval.",
-	"bound":          "From %s on the temperatures are bounds: %s",
-	"cautions":       "Cautions for this run",
-	"cautions none":  "None beyond the standing caution.",
-	"input":          "Input: what was typed and what was used",
-	"typed":          "%s, %s: typed %q, used %s",
-	"default":        "%s, %s: left blank, used %s",
-	"because":        " (%s)",
-	"known":          "Known-answer cases solved by this program on this machine",
-	"known none":     "None were solved in this run.",
-	"known one":      "%s: expected %s, got %s, allowance %s: %s. Source: %s",
-	"known good":     "within the allowance",
-	"known bad":      "OUTSIDE THE ALLOWANCE: do not use these results",
-	"caution":        "Caution",
-	"changes":        "When to look at the process again",
-	"glossary":       "Words used",
-	"end":            "End of the report.",
+	"title":           "slowpoint: calculated temperatures held against the limits that the user entered",
+	"order":           "This text says the same as the PDF reports. First the plan, then all products with their verdicts, then each product, then the known-answer cases and the words used.",
+	"courses":         "The whole courses of temperature are in results.xlsx and results.json.",
+	"rounding":        "Temperatures stand in the user's unit first, with the other unit in brackets. Results are rounded to the unfavourable side; limits are not rounded.",
+	"plan":            "Plan",
+	"file":            "File: %s",
+	"digest":          "SHA-256 of the file: %s",
+	"source":          "Made by the import from: %s, SHA-256 %s",
+	"version":         "Program: slowpoint %s",
+	"date":            "Date: %s",
+	"item":            "%s: %s",
+	"blank":           "(blank)",
+	"problems":        "Problems in the plan",
+	"no problems":     "None.",
+	"problem":         "%s, %s",
+	"refused":         "Products that could not be calculated",
+	"refused one":     "%s (%s)",
+	"list":            "All products, the most urgent first",
+	"list part":       "The products of this run, the most urgent first",
+	"list none":       "No product was calculated.",
+	"list one":        "%d. %s: %s.",
+	"list deciding":   " Deciding limit: %s.",
+	"list room":       " Margin: %s.",
+	"list why":        " Why: %s",
+	"list cautions":   " Cautions: %d.",
+	"product":         "Product %d: %s",
+	"verdict":         "Verdict: %s. %s",
+	"what":            "What was calculated",
+	"limits":          "Limits, the most urgent first",
+	"limits none":     "No limit was judged.",
+	"group":           "Group %s (%s): %s.",
+	"group by":        " Decided by %s.",
+	"limit":           "Limit %d: %s: %s",
+	"properties":      "%s at %s: conductivity %s W/(m·K), density %s kg/m³, specific heat %s J/(kg·K)",
+	"properties ice":  ", ice %s",
+	"limit low":       " (second run, at 0.9 of the conductivity)",
+	"limit mixed":     " (run as well mixed)",
+	"limit worst":     " (at its unfavourable ends)",
+	"measured":        "Measured (the user's own records)",
+	"record":          "Record %s",
+	"as recorded":     "With the surroundings as recorded",
+	"as recorded one": "%s: as planned %s; as recorded %s. %s",
+	"record limit":    "Record %s, limit %s: %s",
+	"drivers":         "What drives each margin",
+	"drivers of":      "%s",
+	"driver":          "%d. %s. %s. Basis: %s",
+	"course":          "Course of temperature",
+	"recorded":        "These temperatures were measured.",
+	"predicted":       "These temperatures were calculated, not measured.",
+	"step":            "%s, %s to %s",
+	"step medium":     "surroundings at the end %s",
+	"coldest":         "coldest at the end %s (%s)",
+	"hottest":         "hottest at the end %s (%s)",
+	"mean":            "mean at the end %s",
+	"point":           "%s at the end %s",
+	"deciding":        "where the tightest limit is decided (%s) at the end %s",
+	"moves":           "How the slowest place moves",
+	"lever":           "The biggest lever",
+	"profile":         "Profile through the product",
+	"factors":         "What the numbers rest on",
+	"factor":          "%s: %s",
+	"factor from":     " (from: %s)",
+	"method":          "Method: %s.",
+	"error":           "Error estimate: %s at any place, from %s after each change of surroundings%s.",
+	"interval":        "Courses are written every %s and at each change of step; limits are judged from the field itself, not from this interval.",
+	"bound":           "From %s on the temperatures are bounds: %s",
+	"cautions":        "Cautions for this run",
+	"cautions none":   "None beyond the standing caution.",
+	"input":           "Input: what was typed and what was used",
+	"typed":           "%s, %s: typed %q, used %s",
+	"default":         "%s, %s: left blank, used %s",
+	"because":         " (%s)",
+	"known":           "Known-answer cases solved by this program on this machine",
+	"known none":      "None were solved in this run.",
+	"known one":       "%s: expected %s, got %s, allowance %s: %s. Source: %s",
+	"known good":      "within the allowance",
+	"known bad":       "OUTSIDE THE ALLOWANCE: do not use these results",
+	"caution":         "Caution",
+	"changes":         "When to look at the process again",
+	"glossary":        "Words used",
+	"end":             "End of the report.",
 }
 
 func (t *Text) put(s string) { _, _ = t.buf.WriteString(s) } // the writer keeps the first error for Flush
@@ -169,6 +171,7 @@ func (t *Text) Add(p *Product) error {
 	t.drivers(x)
 	t.course(x)
 	t.records(x)
+	t.deviated(x)
 	t.basis(x)
 	t.cautions(x)
 	t.readings(p)
@@ -273,6 +276,33 @@ func (t *Text) records(x *sheet) {
 			}
 		}
 	}
+}
+
+// deviated writes what the product came to with the surroundings as they were recorded.
+func (t *Text) deviated(x *sheet) {
+	v := x.p.Deviation
+	if v == nil {
+		return
+	}
+	t.heading(2, "as recorded")
+	t.plain(v.verdict())
+	t.plain(say("deviated note"))
+	for _, r := range x.besideWords() {
+		t.item(fmt.Sprintf(textWords["as recorded one"], r[0], r[1], r[2], r[3]))
+	}
+	for i := range v.Records {
+		m := &v.Records[i]
+		t.heading(3, "record", m.Name)
+		for _, e := range m.Problems {
+			t.problem(e)
+		}
+		for _, f := range m.facts(t.h) {
+			if f[1] != "" {
+				t.item(fmt.Sprintf(textWords["item"], f[0], f[1]))
+			}
+		}
+	}
+	t.plain(say("deviated spread", t.h.difference(v.WithinK, up)))
 }
 
 // drivers writes what drives each margin.

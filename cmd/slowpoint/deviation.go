@@ -18,11 +18,14 @@ const simplifyK = 0.05
 
 // medium is the record of the surroundings of a step, ready to be calculated with.
 type medium struct {
-	step              int
-	durationS         float64
-	nominal, low, top model.Course // as read, and the bounds that gaps and the accuracy of the instrument allow
-	bounded           bool         // the bounds differ from the readings
+	step      int
+	durationS float64
+	courses   []model.Course // as read, then the ends that the accuracy of the instrument, the simplification and each gap allow
+	manyGaps  bool           // more than were tried at every combination of their ends
 }
+
+// gapsTried is how many gaps of a medium are tried at every combination of their ends, mostRuns how many runs in all.
+const gapsTried, mostRuns = 3, 64
 
 // deviate calculates a product with the surroundings that were recorded. It is nil if none were, or none could be used; the problems are
 // told either way.
@@ -55,7 +58,7 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "the record could not be used"}
 		return v
 	}
-	run := func(of func(*medium) model.Course) (*report.Product, error) {
+	run := func(which []int) (*report.Product, error) {
 		q := *p
 		q.Steps = append([]model.Step(nil), p.Steps...)
 		q.Spreads = nil
@@ -64,31 +67,35 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 				q.Spreads = append(q.Spreads, s)
 			}
 		}
-		for _, m := range media {
+		for i, m := range media {
 			st := &q.Steps[m.step]
-			st.Medium, st.Measured, st.DurationS = of(m), true, m.durationS
-			st.Medium.RH = nil
+			st.Medium, st.Measured, st.DurationS = m.courses[which[i]], true, m.durationS
 		}
 		return r.judgedBy(&q, model.Options{})
 	}
-	after, err := run(func(m *medium) model.Course { return m.nominal })
+	after, err := run(make([]int, len(media)))
 	if err != nil {
 		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "it cannot be calculated: " + oneLine(err)}
 		return v
 	}
 	v.History = after.History
 	findings := after.Judgement.Findings
-	if slices.ContainsFunc(media, func(m *medium) bool { return m.bounded }) {
-		for _, of := range []func(*medium) model.Course{func(m *medium) model.Course { return m.low }, func(m *medium) model.Course { return m.top }} {
-			bound, err := run(of)
-			if err != nil {
-				v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "its bounds cannot be calculated: " + oneLine(err)}
-				return v
+	for _, which := range ends(media) {
+		bound, err := run(which)
+		if err != nil {
+			v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "its bounds cannot be calculated: " + oneLine(err)}
+			return v
+		}
+		for i := range findings {
+			if i < len(bound.Judgement.Findings) && rules.Worse(&bound.Judgement.Findings[i], &findings[i]) {
+				findings[i] = bound.Judgement.Findings[i]
 			}
-			for i := range findings {
-				if i < len(bound.Judgement.Findings) && rules.Worse(&bound.Judgement.Findings[i], &findings[i]) {
-					findings[i] = bound.Judgement.Findings[i]
-				}
+		}
+	}
+	for _, m := range media {
+		for i := range findings {
+			if f := &findings[i]; m.manyGaps && f.Verdict == rules.Met {
+				f.Verdict, f.Why = rules.CannotTell, "It is met at the ends of all gaps together, and there are too many to try them apart."
 			}
 		}
 	}
@@ -97,6 +104,30 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 	}
 	v.Judgement = rules.Conclude(findings, r.plan.Groups)
 	return v
+}
+
+// ends are the runs beside the one as read: every combination of the ends of the media, as far as there are not too many.
+func ends(media []*medium) [][]int {
+	n := 1
+	for _, m := range media {
+		n *= len(m.courses) - 1
+	}
+	var out [][]int
+	if n > mostRuns {
+		low, high := make([]int, len(media)), make([]int, len(media))
+		for i, m := range media {
+			low[i], high[i], m.manyGaps = 1, len(m.courses)-1, true
+		}
+		return [][]int{low, high}
+	}
+	for k := range n {
+		which := make([]int, len(media))
+		for i, m := range media {
+			which[i], k = 1+k%(len(m.courses)-1), k/(len(m.courses)-1)
+		}
+		out = append(out, which)
+	}
+	return out
 }
 
 // surroundings reads the record of a medium for a product.
@@ -174,53 +205,64 @@ func (air *medium) fill(log *record.Log, from, to, errorK float64, m *report.Mea
 		j++
 	}
 	m.Readings, m.Before, m.After = j-i+1, i, len(log.TimesS)-1-j
-	lowest, highest := slices.Min(log.C[i:j+1]), slices.Max(log.C[i:j+1])
-	gap := map[int]bool{}
+	lowest, highest := slices.Min(log.C), slices.Max(log.C)
+	gaps := map[int]int{} // by the reading before it: its number
 	for _, g := range log.Gaps {
 		if g >= i && g < j {
-			gap[g] = true
+			gaps[g] = len(gaps)
 			m.Gaps = append(m.Gaps, [2]float64{log.TimesS[g] - from, log.TimesS[g+1] - from})
 		}
 	}
-	air.bounded = errorK > 0 || len(gap) > 0
-	of := func(shift float64, bound float64) model.Course {
+	value := func(t float64) float64 { // straight lines; the last reading goes on
+		k := i
+		for k+1 < len(log.TimesS) && log.TimesS[k+1] < t {
+			k++
+		}
+		if k+1 >= len(log.TimesS) {
+			return log.C[k]
+		}
+		f := min(max((t-log.TimesS[k])/(log.TimesS[k+1]-log.TimesS[k]), 0), 1)
+		return log.C[k] + f*(log.C[k+1]-log.C[k])
+	}
+	const jump = 1e-3 // s, for a change at a gap's ends
+	of := func(shift float64, bound func(gap int) float64) model.Course {
 		c := model.Course{Name: m.Name}
 		add := func(t, x float64) {
-			if n := len(c.TimesS); n > 0 && t <= c.TimesS[n-1] {
-				t = math.Nextafter(c.TimesS[n-1]+1e-3, math.Inf(1))
+			if n := len(c.TimesS); n == 0 || t > c.TimesS[n-1] {
+				c.TimesS, c.C = append(c.TimesS, t), append(c.C, x+shift)
 			}
-			c.TimesS, c.C = append(c.TimesS, t), append(c.C, x)
 		}
-		value := func(t float64, k int) float64 { // between readings k and k+1
-			if k+1 >= len(log.TimesS) {
-				return log.C[k]
-			}
-			f := min(max((t-log.TimesS[k])/(log.TimesS[k+1]-log.TimesS[k]), 0), 1)
-			return log.C[k] + f*(log.C[k+1]-log.C[k])
-		}
-		add(0, value(from, i)+shift)
+		add(0, value(from))
 		for k := i; k <= j; k++ {
 			if t := log.TimesS[k] - from; t > 0 && t < to-from {
-				add(t, log.C[k]+shift)
+				add(t, log.C[k])
 			}
-			if gap[k] && !math.IsNaN(bound) {
-				a, b := max(log.TimesS[k]-from, 0), min(log.TimesS[k+1]-from, to-from)
-				add(a+1e-3, bound+shift)
-				add(b-1e-3, bound+shift)
+			if g, lacking := gaps[k]; lacking && bound != nil {
+				add(max(log.TimesS[k]-from, 0)+jump, bound(g))
+				add(min(log.TimesS[k+1]-from, to-from)-jump, bound(g))
 			}
 		}
-		add(to-from, value(to, j-1+btoi(j == i))+shift)
+		add(to-from, value(to))
 		return simplified(c)
 	}
-	air.nominal = of(0, math.NaN())
-	air.low, air.top = of(-errorK, lowest), of(errorK, highest)
-}
-
-func btoi(b bool) int {
-	if b {
-		return 1
+	air.courses = []model.Course{of(0, nil)}
+	n := len(gaps)
+	if n > gapsTried {
+		n, air.manyGaps = 1, true // all together
 	}
-	return 0
+	for _, shift := range []float64{-errorK - simplifyK, errorK + simplifyK} {
+		for which := range 1 << n {
+			air.courses = append(air.courses, of(shift, func(g int) float64 {
+				if air.manyGaps {
+					g = 0
+				}
+				if which>>g&1 == 0 {
+					return lowest
+				}
+				return highest
+			}))
+		}
+	}
 }
 
 // simplified drops the rows of a course that straight lines between the others pass within simplifyK (Ramer, Douglas and Peucker's method).
