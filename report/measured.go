@@ -250,26 +250,23 @@ func (m *Measured) verdict() rules.Verdict {
 	return overall(m.Judgement.Verdict)
 }
 
-// measuredWorst is the worst verdict of the records of a product; NotApplicable if it has none.
-func (p *Product) measuredWorst() rules.Verdict {
-	worst := rules.NotApplicable
-	if p.recorded() {
-		return worst
-	}
-	order := []rules.Verdict{rules.NotMet, rules.CannotTell, rules.Met, rules.NotApplicable}
+// measuredWorst is the worst verdict of the records of a product; nil if it has none.
+func (p *Product) measuredWorst() *rules.Verdict {
 	var all []rules.Verdict
+	if p.recorded() {
+		return nil
+	}
 	for i := range p.Measured {
 		all = append(all, p.Measured[i].verdict())
 	}
 	if p.Deviation != nil {
 		all = append(all, overall(p.Deviation.Judgement.Verdict))
 	}
-	for _, v := range all {
-		if slices.Index(order, v) < slices.Index(order, worst) {
-			worst = v
-		}
+	if len(all) == 0 {
+		return nil
 	}
-	return worst
+	worst := slices.MinFunc(all, func(a, b rules.Verdict) int { return weight(a) - weight(b) })
+	return &worst
 }
 
 // predictedAt is the prediction beside a record, for the chart.

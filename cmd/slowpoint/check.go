@@ -667,7 +667,7 @@ func (r *runner) exit() error {
 		return &failure{exitInput, errors.New("the plan has no product to calculate")}
 	}
 	for _, row := range r.rows {
-		if row.Verdict != rules.Met || row.Measured == rules.NotMet || row.Measured == rules.CannotTell {
+		if row.Verdict != rules.Met || row.Measured != nil && *row.Measured != rules.Met {
 			return &failure{code: exitNotMet}
 		}
 	}
