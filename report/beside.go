@@ -7,18 +7,10 @@ import (
 	"slowpoint/rules"
 )
 
-// beside is what must be read together with a product's verdict, a sentence each: what records showed, limits that are met only by carry-over, steps
+// beside is what must be read together with a product's verdict, a sentence each: limits that are met only by carry-over, steps
 // whose Until did not do what it was typed for, and limits that did not apply, for a slip in a unit shows itself only there.
 func (p *Product) beside() []string {
 	var s []string
-	for i := range p.Measured {
-		if !p.recorded() {
-			s = append(s, p.Measured[i].verdictOf(p))
-		}
-	}
-	if p.Deviation != nil {
-		s = append(s, p.Deviation.verdict())
-	}
 	decides := p.decides().finding
 	for _, f := range p.worstFirst() {
 		if f.CarryOver != "" && f.Verdict == rules.Met && f.Level == "must" && f.Limit != nil {
