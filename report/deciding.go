@@ -195,6 +195,7 @@ type Row struct {
 	Beside           string         // what must be read with the verdict, in sentences; Why ends with it
 	Problems         int            // warnings that touch the product
 	Measured         *rules.Verdict // the worst of its records; nil: it has none
+	Records          []string       // what each record came to, a sentence each
 	File             string         // name of its document; set by whoever names the files
 	tight            float64
 }
@@ -215,6 +216,7 @@ func (p *Product) Row() Row {
 		}
 	}
 	r.Beside = strings.Join(p.beside(), " ")
+	r.Records = p.recordSentences()
 	r.Why = strings.TrimSpace(r.Why + " " + r.Beside)
 	return r
 }

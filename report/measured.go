@@ -216,13 +216,68 @@ func (x *sheet) records() {
 		for _, s := range m.compared(x.head) {
 			d.text(s)
 		}
-		for _, f := range y.order {
-			if f.Verdict != rules.NotApplicable {
-				y.card(f)
-			}
-		}
+		d.table([]col{{title: say("col limit"), wide: 40, bold: true}, {title: say("col verdict"), wide: 25, bold: true}, {title: say("col value"), wide: 27},
+			{title: say("col margin"), wide: 34}, {title: say("col why"), wide: frameWide - 126}}, y.recordRows(), small)
 		x.echo(m)
 	}
+}
+
+// recordRows are the findings on a record: limit, verdict, value, room, why; what the limits cite stands with the prediction.
+func (x *sheet) recordRows() [][]string {
+	var rows [][]string
+	for _, f := range x.order {
+		if f.Limit == nil || f.Verdict == rules.NotApplicable {
+			continue
+		}
+		value := x.head.quantity(f, f.Value, false)
+		if value != "" && finite(f.Required) {
+			value = say("card value", value, x.head.quantity(f, f.Required, true))
+		}
+		why := sentence(f.Why)
+		if len(f.Notes) > 0 {
+			why += " " + sentence(strings.Join(f.Notes, "; "))
+		}
+		if n := len(f.Cells); n > 0 && f.Cells[n-1].Row == 0 { // the reading that decides
+			why += " " + say("record line", f.Cells[n-1].Sheet)
+		}
+		name := f.Limit.Name
+		if f.Level != "must" {
+			name = say("record level", name, f.Level)
+		}
+		rows = append(rows, []string{name, verdictWord(f.Verdict), value, x.head.room(f), why})
+	}
+	return rows
+}
+
+// recordsShort says for the kitchen what the records came to, without the reasons.
+func (x *sheet) recordsShort() string {
+	if x.p.recorded() {
+		return ""
+	}
+	s := ""
+	for i := range x.p.Measured {
+		m := &x.p.Measured[i]
+		s += " " + say("record short", m.Name, m.verdict().String())
+	}
+	if v := x.p.Deviation; v != nil {
+		s += " " + say("deviated short", v.names(), overall(v.Judgement.Verdict).String())
+	}
+	return s
+}
+
+// recordSentences tell what each record came to.
+func (p *Product) recordSentences() []string {
+	if p.recorded() {
+		return nil
+	}
+	var s []string
+	for i := range p.Measured {
+		s = append(s, p.Measured[i].verdictOf(p))
+	}
+	if p.Deviation != nil {
+		s = append(s, p.Deviation.verdict())
+	}
+	return s
 }
 
 // echo shows the first and last rows of a file as they were understood.

@@ -175,10 +175,11 @@ func (x *sheet) verdictBox() {
 	word := verdictWord(overall(x.p.Judgement.Verdict))
 	wide := widthMM(word, 20, true) + 8
 	size := 12.0
-	lines := wrap(d.clean(x.headline()+x.besides()), frameWide-wide-4, size, false)
+	says := x.headline() + x.recordsShort() + x.besides()
+	lines := wrap(d.clean(says), frameWide-wide-4, size, false)
 	if len(lines) > 5 {
 		size = kitchen
-		lines = wrap(capped(d.clean(x.headline()+x.besides()), frameWide-wide-4, size, 9), frameWide-wide-4, size, false)
+		lines = wrap(capped(d.clean(says), frameWide-wide-4, size, 9), frameWide-wide-4, size, false)
 	}
 	h := max(float64(len(lines))*height(size)+5, 14)
 	d.frame(d.left, d.y, frameWide, h, 2)
@@ -458,6 +459,9 @@ func (x *sheet) front() {
 	d.heading(say("front title", p.Product.Name), 0, 20)
 	d.para(say("front verdict", verdictWord(overall(p.Judgement.Verdict)), x.headline()+x.lessRoom()+x.besides()), style{size: 11, bold: true, after: 1})
 	d.text(x.counts())
+	for _, s := range p.recordSentences() {
+		d.para(s, style{size: body, bold: true, after: 1})
+	}
 	d.text(strings.Join(CautionText()[:2], " ") + say("see cautions"))
 	for _, g := range p.Judgement.Groups {
 		key := "group all"

@@ -66,6 +66,9 @@ func (d *doc) summary(rows []Row) {
 		case r.Beside != "":
 			margin += "\n" + r.Beside
 		}
+		if len(r.Records) > 0 {
+			margin = strings.TrimSpace(margin + "\n" + strings.Join(r.Records, "\n"))
+		}
 		name := r.Product
 		if r.File != "" {
 			name += "\n" + r.File
