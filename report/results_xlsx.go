@@ -764,7 +764,7 @@ func (b *Workbook) overview() *grid {
 			g.skip()
 		}
 		g.text(r.at.String())
-		g.text(r.Why)
+		g.text(strings.TrimSpace(r.Why + " " + strings.Join(r.Records, " ")))
 		g.end()
 	}
 	last := g.row

@@ -34,8 +34,8 @@ func slimOf(h *Head, p *Product, order int) slim {
 	return s
 }
 
-// worst is the less favourable of what was predicted and what was measured.
-func (r *Row) worst() rules.Verdict {
+// Worst is the less favourable of what was predicted and what was measured.
+func (r *Row) Worst() rules.Verdict {
 	if r.Measured != nil && weight(*r.Measured) < weight(r.Verdict) {
 		return *r.Measured
 	}
@@ -75,8 +75,8 @@ func listed(ns []NotCalculated, rows []slim) []slim {
 		switch {
 		case a.calculated != b.calculated:
 			return b.calculated
-		case a.worst() != b.worst():
-			return weight(a.worst()) < weight(b.worst())
+		case a.Worst() != b.Worst():
+			return weight(a.Worst()) < weight(b.Worst())
 		}
 		return a.tight < b.tight
 	})

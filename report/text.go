@@ -75,7 +75,7 @@ var textWords = map[string]string{
 	"record":          "Record %s",
 	"as recorded":     "With the surroundings as recorded",
 	"as recorded one": "%s: as planned %s; as recorded %s. %s",
-	"record limit":    "Record %s, limit %s: %s",
+	"record limit":    "%s: %s; %s. %s",
 	"drivers":         "What drives each margin",
 	"drivers of":      "%s",
 	"driver":          "%d. %s. %s. Basis: %s",
@@ -163,6 +163,9 @@ func (t *Text) Add(p *Product) error {
 	t.heading(1, "product", len(t.rows), p.Product.Name)
 	t.line("verdict", overall(p.Judgement.Verdict), x.headline()+x.lessRoom()+x.besides())
 	t.plain(x.counts())
+	for _, s := range p.recordSentences() {
+		t.plain(s)
+	}
 	for _, e := range t.h.ProblemsOf(p) {
 		t.problem(e)
 	}
@@ -264,16 +267,8 @@ func (t *Text) records(x *sheet) {
 		}
 		q := m.asProduct(x.p)
 		y := &sheet{doc: x.doc, p: q, decides: q.decides(), order: q.worstFirst()}
-		for _, f := range y.order {
-			if f.Limit == nil || f.Verdict == rules.NotApplicable {
-				continue
-			}
-			t.heading(3, "record limit", m.Name, f.Limit.Name, f.Verdict)
-			for _, r := range y.cardRows(f) {
-				if r[1] != "" {
-					t.item(fmt.Sprintf(textWords["item"], r[0], r[1]))
-				}
-			}
+		for _, r := range y.recordRows() {
+			t.item(fmt.Sprintf(textWords["record limit"], r[0], r[1], joinedBy(r[2], r[3]), r[4]))
 		}
 	}
 }
@@ -573,6 +568,9 @@ func (t *Text) list() {
 		}
 		if r.Why != "" {
 			s += fmt.Sprintf(textWords["list why"], r.Why)
+		}
+		for _, one := range r.Records {
+			s += " " + one
 		}
 		if r.cautions > 0 {
 			s += fmt.Sprintf(textWords["list cautions"], r.cautions)

@@ -576,10 +576,10 @@ func (r *runner) tell(w io.Writer) {
 	for i := range order {
 		order[i] = i
 	}
-	slices.SortStableFunc(order, func(a, b int) int { return weigh(r.rows[a].Verdict) - weigh(r.rows[b].Verdict) })
+	slices.SortStableFunc(order, func(a, b int) int { return weigh(r.rows[a].Worst()) - weigh(r.rows[b].Worst()) })
 	for _, i := range order[:min(len(order), most)] {
 		row := &r.rows[i]
-		fmt.Fprintf(w, "%-14s %s\n", strings.ToUpper(row.Verdict.String()), row.Product)
+		fmt.Fprintf(w, "%-14s %s%s\n", strings.ToUpper(row.Verdict.String()), row.Product, byRecord(row))
 		line := row.Deciding
 		if room := row.Room(r.head); room != "" {
 			line += ": " + room
@@ -589,6 +589,9 @@ func (r *runner) tell(w io.Writer) {
 		}
 		if row.Why != "" {
 			fmt.Fprintf(w, "%s%s\n", indent, row.Why)
+		}
+		for _, s := range row.Records {
+			fmt.Fprintf(w, "%s%s\n", indent, s)
 		}
 		if r.advice[i] != "" {
 			fmt.Fprintf(w, "%sAdvice not met: %s\n", indent, r.advice[i])
@@ -609,6 +612,14 @@ func (r *runner) tell(w io.Writer) {
 	if stale := r.shelf.stale(); stale != "" {
 		fmt.Fprintln(w, stale)
 	}
+}
+
+// byRecord says behind the name of a product that a record is not met or cannot be told.
+func byRecord(r *report.Row) string {
+	if r.Measured == nil || *r.Measured == rules.Met {
+		return ""
+	}
+	return " – by record " + strings.ToUpper(r.Measured.String())
 }
 
 // firstFault is the first error of a product that was not calculated, and how many more it has.
@@ -638,6 +649,17 @@ func (r *runner) counts() string {
 		n[rules.CannotTell]+n[rules.NotApplicable])
 	if k := len(r.head.NotCalculated); k > 0 {
 		s += fmt.Sprintf(", %d not calculated", k)
+	}
+	records := map[rules.Verdict]int{}
+	some := 0
+	for _, row := range r.rows {
+		if row.Measured != nil {
+			records[*row.Measured]++
+			some++
+		}
+	}
+	if some > 0 {
+		s += fmt.Sprintf("; by records of %s: %d met, %d not met, %d cannot tell", count(some, "product"), records[rules.Met], records[rules.NotMet], records[rules.CannotTell])
 	}
 	return s + notImported(r.plan)
 }
