@@ -99,7 +99,7 @@ func (x *sheet) deviated() {
 		x.echo(m)
 	}
 	if v.WithinK > 0 {
-		d.text(say("deviated spread", x.head.difference(v.WithinK, up)))
+		d.text(say("deviated spread", three(v.WithinK)))
 	}
 	if v.History != nil {
 		q := &Product{Product: x.p.Product, Steps: x.p.Steps, History: v.History, Judgement: rules.Judgement{Findings: v.Judgement.Findings}}

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strconv"
 	"strings"
 
 	"slowpoint/model"
@@ -172,12 +173,15 @@ func (m *Measured) compared(h *Head) []string {
 	if len(a.Fitted) > 0 {
 		var s []string
 		for _, f := range a.Fitted {
-			words := say("fitted one", f.What, significant(f.Value), significant(f.Low), significant(f.High), f.Unit)
+			words := say("fitted one", f.What, three(f.Value), three(f.Low), three(f.High))
 			if f.Vague {
-				words = say("fitted vague", f.What, significant(f.Low), significant(f.High), f.Unit)
+				words = say("fitted vague", f.What, three(f.Low), three(f.High))
+			}
+			if f.Unit != "" {
+				words += " " + f.Unit
 			}
 			if f.Typed > 0 {
-				words += say("fitted typed", significant(f.Typed), f.Unit)
+				words += say("fitted typed", three(f.Typed))
 			}
 			s = append(s, words)
 		}
@@ -344,4 +348,12 @@ func predictedAt(tr *model.Trace, times []float64) []float64 {
 		out[i] = tr.C[j] + min(max(f, 0), 1)*(tr.C[j+1]-tr.C[j])
 	}
 	return out
+}
+
+// three writes a number with three significant digits.
+func three(v float64) string {
+	if v == 0 {
+		return "0"
+	}
+	return strconv.FormatFloat(v, 'f', max(0, 2-int(math.Floor(math.Log10(math.Abs(v))))), 64)
 }

@@ -1045,7 +1045,11 @@ func (x *sheet) measured() {
 		return
 	}
 	if !rec {
-		d.text(say("measured none"))
+		none := "measured none"
+		if p.Deviation != nil {
+			none = "measured food none"
+		}
+		d.text(say(none))
 		x.blankTable([]string{"blank date", "blank batch", "blank place", "blank start", "blank end", "blank logger", "blank initials"}, 3) // runs that are often asked for
 		return
 	}

@@ -297,7 +297,7 @@ func (t *Text) deviated(x *sheet) {
 			}
 		}
 	}
-	t.plain(say("deviated spread", t.h.difference(v.WithinK, up)))
+	t.plain(say("deviated spread", three(v.WithinK)))
 }
 
 // drivers writes what drives each margin.

@@ -28,6 +28,7 @@ import (
 type checkOptions struct {
 	out, every, date, paper, font string
 	only                          []string
+	fit                           string
 	onePDF, noPDF                 bool
 	samples                       int
 	seed                          uint64
@@ -47,6 +48,7 @@ func checkCommand(files *shelf) *cobra.Command {
 	f.StringVar(&o.date, "date", "", "`DATE` on the report, as 2026-01-31 (default today)")
 	f.StringVar(&o.paper, "paper", "", "`SIZE` of the pages: A4 or Letter (default: the plan's own, else A4)")
 	f.StringVar(&o.font, "font", "", "TrueType `FILE.ttf` that prints, in the PDFs, the characters that DejaVu Sans lacks, such as Chinese or Japanese ones")
+	f.StringVar(&o.fit, "fit", "", "with a sheet Records: fit `WHAT` to each record of a product: film, conductivity or film,conductivity; it changes no verdict")
 	f.BoolVar(&o.onePDF, "one-pdf", false, "one PDF with everything instead of one a product")
 	f.BoolVar(&o.noPDF, "no-pdf", false, "write no PDF")
 	f.IntVar(&o.samples, "samples", 0, "with a sheet Spread: judge `N` drawn pieces, 200 say, and tell the share that meets each limit (0 = none)")
@@ -70,6 +72,10 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 		plan.Problems = append(plan.Problems, unprinted(plan)...)
 		plan.Problems.Sort(plan.Sheets)
 	}
+	fit, err := fittingOf(o.fit)
+	if err != nil {
+		return &failure{exitInput, err}
+	}
 	names := filesOf(plan)
 	left, err := keepOnly(plan, "--only", o.only)
 	if err != nil {
@@ -87,7 +93,7 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 		head.Known = append(head.Known, k.KnownAnswer)
 	}
 	head.Products = len(plan.Products)
-	r := &runner{shelf: files, plan: plan, head: head, logs: newLogs(plan, planFolder(args)), folder: folder, options: o, names: names, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
+	r := &runner{shelf: files, plan: plan, head: head, logs: newLogs(plan, planFolder(args)), fit: fit, folder: folder, options: o, names: names, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
 	if err := r.all(); err != nil {
 		return &failure{exitFault, err}
 	}
@@ -363,6 +369,7 @@ type runner struct {
 	rows     []report.Row
 	advice   []string               // by row: the advice that is not met, a line each
 	logs     *logs                  // the files of records; nil: they are left alone
+	fit      fitting                // what is fitted to records
 	alone    *workbook.Record       // the record that is judged in the place of a prediction; nil: the plan is calculated
 	names    map[string]string      // by product: the file name of its report, without its ending
 	refused  []report.NotCalculated // found while calculating

@@ -28,7 +28,7 @@ var order = map[string]struct{ ours, others string }{
 	"cmd/slowpoint/workbook": {"model model/cell model/unit model/food rules", "github.com/xuri/excelize golang.org/x/text"},
 	"cmd/slowpoint/record":   {"model model/cell model/unit cmd/slowpoint/workbook", "github.com/xuri/excelize golang.org/x/text"},
 	"cmd/slowpoint/intake":   {"model model/cell model/unit model/food rules cmd/slowpoint/workbook", "github.com/xuri/excelize golang.org/x/text"},
-	"cmd/slowpoint": {"model model/cell model/unit model/food model/verify rules rules/codes rules/known report cmd/slowpoint/workbook cmd/slowpoint/intake cmd/slowpoint/record",
+	"cmd/slowpoint": {"model model/cell model/unit model/food model/fit model/verify rules rules/codes rules/known report cmd/slowpoint/workbook cmd/slowpoint/intake cmd/slowpoint/record",
 		"github.com/spf13/cobra github.com/schollz/progressbar golang.org/x/term"},
 }
 

@@ -430,6 +430,7 @@ func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.
 		}
 	}
 	a.RMSK = math.Sqrt(a.RMSK)
+	r.fit.fitTo(&p.Product, steps, way.first, on, c, rec.AccuracyK, m.ResolutionK, a)
 	m.Against = a
 }
 
