@@ -36,6 +36,8 @@ var examples = []struct {
 	{"pie-in-a-tin", []string{"--every", "600s"}, exitNotMet, nil},
 	{"humid-and-dry-oven", []string{"--every", "600s"}, exitNotMet, nil},
 	{"worst-case", []string{"--every", "600s", "--samples", "200"}, exitNotMet, nil},
+	{"trial-runs", []string{"--every", "600s", "--fit", "film"}, exitNotMet, nil},
+	{"chiller-failure", []string{"--every", "600s"}, exitNotMet, nil},
 	{"sixty-products", []string{"--every", "3600s"}, exitInput, []string{"summary.pdf", "report.txt", "results.json"}},
 }
 
@@ -61,6 +63,14 @@ func TestExamples(t *testing.T) {
 			if err := os.WriteFile(book, made["plan.xlsx"], 0o644); err != nil {
 				t.Fatal(err)
 			}
+			if records := filepath.Join(dir, "plan", "records"); isThere(records) { // files of loggers lie beside the plan
+				if err := os.CopyFS(filepath.Join(tmp, "records"), os.DirFS(records)); err != nil {
+					t.Fatal(err)
+				}
+				for name, b := range filesIn(t, records) {
+					made["records/"+name] = b
+				}
+			}
 			checked(t, book, out, e.flags, e.exit)
 			for name, b := range filesIn(t, out) {
 				if e.keep == nil || slices.Contains(e.keep, name) {
@@ -84,6 +94,11 @@ func TestExamples(t *testing.T) {
 			}
 		})
 	}
+}
+
+func isThere(name string) bool {
+	_, err := os.Stat(name)
+	return err == nil
 }
 
 // checked runs check on a plan and wants the exit code.
@@ -120,10 +135,10 @@ func keep(t *testing.T, dir string, made map[string][]byte) {
 	if err := os.RemoveAll(filepath.Join(dir, "report")); err != nil {
 		t.Fatal(err)
 	}
-	if err := os.MkdirAll(filepath.Join(dir, "report"), 0o755); err != nil {
-		t.Fatal(err)
-	}
 	for name, b := range made {
+		if err := os.MkdirAll(filepath.Dir(filepath.Join(dir, name)), 0o755); err != nil {
+			t.Fatal(err)
+		}
 		if err := os.WriteFile(filepath.Join(dir, name), b, 0o644); err != nil {
 			t.Fatal(err)
 		}
@@ -136,6 +151,11 @@ func sameAsKept(t *testing.T, dir string, made map[string][]byte) {
 	kept := map[string][]byte{}
 	for name, b := range filesIn(t, filepath.Join(dir, "report")) {
 		kept["report/"+name] = b
+	}
+	if records := filepath.Join(dir, "records"); isThere(records) {
+		for name, b := range filesIn(t, records) {
+			kept["records/"+name] = b
+		}
 	}
 	b, err := os.ReadFile(filepath.Join(dir, "plan.xlsx"))
 	if err != nil {

@@ -72,6 +72,9 @@ func fault(rec *workbook.Record, heading, typed, msg, hint string) *cell.Error {
 // laidOut says when the steps of a product began by a record: as its row says, else as long as the plan has them. lengths are those of
 // the plan, s.
 func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths []float64) (*ran, *cell.Error) {
+	if len(steps) == 0 {
+		return nil, fault(rec, "Product", "", "has no steps in the plan", "add them to the sheet Steps, or judge the record with --stages")
+	}
 	given := map[int]float64{} // by step
 	end, at := log.TimesS[len(log.TimesS)-1], 0.0
 	r := &ran{}

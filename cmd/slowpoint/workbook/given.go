@@ -31,6 +31,9 @@ func ReadWith(name string, given Given) (*Plan, *Record, error) {
 		if err := given.fill(own); err != nil {
 			return nil, nil, fmt.Errorf("%s: %w", name, err)
 		}
+		if grids, digest, err = load(name, "plan"); err != nil { // reading lets cells go
+			return nil, nil, err
+		}
 	}
 	records := SheetNamed("Records")
 	var kept []*Grid
