@@ -173,7 +173,15 @@ func (v *view) mayApply(q question, cs []candidate) (worst candidate, tail strin
 	if math.Abs(top-v.l.crossedC()) <= sameK {
 		return worst, say("clock at the edge", h), true
 	}
-	return worst, say("clock within error", h), true
+	return worst, say(v.read("clock within error"), h), true
+}
+
+// read is the key of a sentence about an error, in the words of a recording where it is one.
+func (v *view) read(key string) string {
+	if v.c.whole != nil {
+		return key + " read"
+	}
+	return key
 }
 
 // spans are the stretches of the windows.
@@ -471,7 +479,7 @@ func (v *view) weigh(f *Finding, o outcome, q question, s scope, cs []candidate)
 			} else {
 				h["by"] = v.l.differenceUp(math.Abs(*f.MarginK))
 			}
-			return say(word, h) + v.turns(f)
+			return say(v.read(word), h) + v.turns(f)
 		}
 	}
 	if !v.proved(f.Verdict, q, s, cs) {

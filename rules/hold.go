@@ -133,7 +133,7 @@ func chills(s *model.Stage) bool {
 // sparse marks a record whose readings are too far apart to show a short time: what lies between the first and the last
 // reading of the periods is not enough, and the time is shorter than the gap at their ends.
 func (v *view) sparse(o *outcome, p path, r region, needS float64, typed string) {
-	if !v.h.Recorded || needS == 0 {
+	if !v.h.Recorded || v.c.whole != nil || needS == 0 { // the courses of a recording tell it by themselves
 		return
 	}
 	var sure, best, gap float64

@@ -23,6 +23,8 @@ type courses struct {
 	marks [3][]float64      // the spots' coordinates on each axis, rising, m; filled with pairs
 	air   *path
 	damp  *path
+	whole *path   // the one course that there is, of a recording; nil elsewhere
+	airK  float64 // how far the recorded medium may be off, K
 
 	roughT []float64 // for ranking many spots: fewer instants, and the spots' temperatures there
 	rough  [][]float64
@@ -123,6 +125,9 @@ type known struct {
 
 // path is the exact course of a place over the steps that an interval touches.
 func (c *courses) path(p model.Place, within interval) path {
+	if c.whole != nil {
+		return *c.whole
+	}
 	k := c.exact[p]
 	if k == nil {
 		k = &known{pieces: make([]path, max(1, len(c.h.Spans))), at: c.asked(p), nodes: c.askedNodes(p)}
@@ -308,7 +313,7 @@ type view struct {
 func newView(l *Limit, c *courses) *view {
 	v := &view{l: l, h: c.h, c: c, runs: runs(c.h.Spans), errK: c.h.ErrorK}
 	if same(l.Where.Name, "medium") {
-		v.errK = 0 // stated, not calculated
+		v.errK = c.airK // stated, not calculated; or recorded
 	}
 	v.stages = v.within(l.Stages)
 	return v

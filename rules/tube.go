@@ -1,0 +1,368 @@
+package rules
+
+import (
+	"fmt"
+	"math"
+	"slices"
+	"sort"
+
+	"slowpoint/model"
+)
+
+// A record is known at its readings only. What the course did between two of them lies in a range: that of the two between usual readings,
+// in which nothing can have come and gone unseen but what is faster than the logger was set for, and a wider one in a gap. All courses
+// within these ranges and through the readings are the tube of the record.
+
+// jumpS is how long a course at the edge of a tube takes for a jump, s.
+const jumpS = 1e-6
+
+// ranged is a stretch of a tube that is not bounded by its own two knots alone.
+type ranged struct {
+	i      int     // between knots i and i+1
+	lo, hi float64 // °C
+	gap    int     // which gap; -1: usual readings, cut by the end of a step
+}
+
+// gap is a time in which nothing was recorded.
+type gap struct {
+	interval
+	lo, hi float64 // between which temperatures the place may have been, °C
+	edge   int     // -1: before the first reading; 1: after the last one; 0: between two
+}
+
+// tube is what the readings of a record allow.
+type tube struct {
+	t, c   []float64 // knots: readings, and the ends of steps between them at the straight-line value
+	free   []int     // knots that are no readings, rising
+	kept   []int     // knots that no course may leave out: the ends of the steps, rising
+	ranges []ranged  // rising
+	gaps   []gap
+	spans  []model.Span // without what lies less than a usual interval or three before the first and after the last reading
+	usualS float64      // the median time between two readings, s
+	lowest float64      // reading, °C
+	most   float64
+	soFar  region // of the readings, while the tube is laid out
+}
+
+// choice is how a course runs between two knots: through up to two temperatures for an instant at its start, then at a level.
+type choice struct {
+	straight bool // from knot to knot, and nothing else
+	visit    [2]float64
+	visits   int
+	level    float64
+}
+
+// at is the choice to stay at a level.
+func at(level float64) choice { return choice{level: level} }
+
+// way is a course through a tube: what it chooses in the stretch i whose range is lo to hi; gap tells that it lies in a gap.
+type way func(i int, lo, hi float64, gap bool) choice
+
+// check finds what keeps a recording from being judged.
+func check(r *model.Recording) error {
+	if len(r.TimesS) == 0 || len(r.TimesS) != len(r.C) {
+		return fmt.Errorf("%s: %d times for %d readings", r.Name, len(r.TimesS), len(r.C))
+	}
+	for i, t := range r.TimesS {
+		if math.IsNaN(r.C[i]) || math.IsInf(r.C[i], 0) || math.IsNaN(t) || math.IsInf(t, 0) || i > 0 && !(t > r.TimesS[i-1]) {
+			return fmt.Errorf("%s: reading %d: time %g s, %g °C", r.Name, i+1, t, r.C[i])
+		}
+	}
+	for _, g := range r.Gaps {
+		if g < 0 || g+1 >= len(r.TimesS) {
+			return fmt.Errorf("%s: no readings beside the gap %d", r.Name, g)
+		}
+	}
+	for _, d := range r.Doubted {
+		if d < 0 || d >= len(r.TimesS) {
+			return fmt.Errorf("%s: no reading %d", r.Name, d+1)
+		}
+	}
+	return nil
+}
+
+// usualStep is the median time between two readings, s; 0 for one reading.
+func usualStep(t []float64) float64 {
+	if len(t) < 2 {
+		return 0
+	}
+	// of a long record a share of the steps is enough
+	every := 1 + len(t)/20000
+	var d []float64
+	for i := 0; i+1 < len(t); i += every {
+		d = append(d, t[i+1]-t[i])
+	}
+	slices.Sort(d)
+	return d[len(d)/2]
+}
+
+// farBeyond is by how many usual intervals a step may begin before the first reading or end after the last one and still be judged from
+// or to that reading, and how many make a gap.
+const farBeyond = 3
+
+// Where nothing was measured at the edge of a record and no medium is known, a place may have been at anything that food comes to, °C.
+const anyLowC, anyHighC = -80, 300
+
+// newTube lays out what a recording allows, without the readings in without (rising).
+func newTube(r *model.Recording, without []int) *tube {
+	u := &tube{usualS: usualStep(r.TimesS), lowest: math.Inf(1), most: math.Inf(-1), soFar: region{lo: math.Inf(1), hi: math.Inf(-1)}}
+	n := len(r.TimesS)
+	out := make(map[int]bool, len(without))
+	for _, i := range without {
+		out[i] = true
+	}
+	first, last := 0, n-1
+	for first < last && out[first] {
+		first++
+	}
+	for last > first && out[last] {
+		last--
+	}
+	for i := first; i <= last; i++ {
+		if !out[i] {
+			u.lowest, u.most = math.Min(u.lowest, r.C[i]), math.Max(u.most, r.C[i])
+		}
+	}
+	u.spans = clipped(r.Spans, r.TimesS[first], r.TimesS[last], farBeyond*u.usualS)
+	ends := u.ends()
+	gaps := map[int]bool{}
+	for _, g := range r.Gaps {
+		gaps[g] = true
+	}
+	air := newSurroundings(r)
+	u.t, u.c = make([]float64, 0, min(n, 1<<20)+len(ends)), make([]float64, 0, min(n, 1<<20)+len(ends))
+	k := 0
+	for k < len(ends) && ends[k] < r.TimesS[first] {
+		k++
+	}
+	if k > 0 { // the chain begins before the record
+		g := gap{interval: interval{ends[0], r.TimesS[first]}, edge: -1}
+		g.lo, g.hi = air.bounds(r, u, first, first, g.interval)
+		u.stretch(ends[:k], knot{g.a, r.C[first]}, knot{g.b, r.C[first]}, &g, true)
+	}
+	for i := first; i <= last; {
+		next, isGap := i+1, gaps[i]
+		for next <= last && out[next] {
+			isGap = isGap || gaps[next]
+			next++
+		}
+		t, c := r.TimesS[i], r.C[i]
+		u.soFar.lo, u.soFar.hi = math.Min(u.soFar.lo, c), math.Max(u.soFar.hi, c)
+		edge := k < len(ends) && ends[k] <= t
+		for k < len(ends) && ends[k] <= t {
+			k++
+		}
+		// readings that repeat the one before and the one after say nothing more
+		if m := len(u.c); edge || m < 2 || next > last || isGap || u.c[m-1] != c || r.C[next] != c || gapsAt(u, m) || k < len(ends) && ends[k] < r.TimesS[next] {
+			u.t, u.c = append(u.t, t), append(u.c, c)
+		}
+		if edge {
+			u.kept = append(u.kept, len(u.t)-1)
+		}
+		if next > last {
+			break
+		}
+		from := k
+		for k < len(ends) && ends[k] < r.TimesS[next] {
+			k++
+		}
+		if isGap || k > from {
+			a, b := knot{t, c}, knot{r.TimesS[next], r.C[next]}
+			var g *gap
+			if isGap {
+				g = &gap{interval: interval{a.t, b.t}}
+				g.lo, g.hi = air.bounds(r, u, i, next, g.interval)
+			}
+			u.stretch(ends[from:k], a, b, g, false)
+		}
+		i = next
+	}
+	if k < len(ends) { // the chain ends after the record
+		g := gap{interval: interval{r.TimesS[last], ends[len(ends)-1]}, edge: 1}
+		g.lo, g.hi = air.bounds(r, u, last, last, g.interval)
+		u.stretch(ends[k:], knot{g.a, r.C[last]}, knot{g.b, r.C[last]}, &g, false)
+	}
+	return u
+}
+
+// gapsAt tells whether the stretch before the knot m has a range of its own.
+func gapsAt(u *tube, m int) bool {
+	n := len(u.ranges)
+	return n > 0 && u.ranges[n-1].i >= m-1
+}
+
+// knot is a point of a course.
+type knot struct{ t, c float64 }
+
+// stretch adds what lies between two readings a and b where it is a gap, or cut by the ends of steps. lead: there is no reading at a.
+func (u *tube) stretch(ends []float64, a, b knot, g *gap, lead bool) {
+	x := ranged{lo: math.Min(a.c, b.c), hi: math.Max(a.c, b.c), gap: -1}
+	if g != nil {
+		x.lo, x.hi, x.gap = g.lo, g.hi, len(u.gaps)
+		u.gaps = append(u.gaps, *g)
+	}
+	if !lead {
+		x.i = len(u.t) - 1
+		u.ranges = append(u.ranges, x)
+	}
+	for _, t := range ends {
+		if t >= b.t && !(g != nil && g.edge == 1) {
+			break
+		}
+		u.kept, u.free = append(u.kept, len(u.t)), append(u.free, len(u.t))
+		u.t, u.c = append(u.t, t), append(u.c, a.c+(b.c-a.c)*(t-a.t)/(b.t-a.t))
+		if g == nil || g.edge != 1 || t < b.t {
+			x.i = len(u.t) - 1
+			u.ranges = append(u.ranges, x)
+		}
+	}
+}
+
+// ends are the ends of the steps, rising; without steps there are none.
+func (u *tube) ends() []float64 {
+	var ends []float64
+	for _, sp := range u.spans {
+		ends = append(ends, sp.StartS, sp.EndS)
+	}
+	return rising(ends)
+}
+
+// clipped is what of the steps lies within the readings from a to b, with steps kept whole that reach out further than slack.
+func clipped(spans []model.Span, a, b, slack float64) []model.Span {
+	out := append([]model.Span(nil), spans...)
+	if len(out) > 0 && out[0].StartS < a && out[0].StartS >= a-slack {
+		for i := range out {
+			out[i].StartS, out[i].EndS = math.Max(out[i].StartS, a), math.Max(out[i].EndS, a)
+		}
+	}
+	if n := len(out); n > 0 && out[n-1].EndS > b && out[n-1].EndS <= b+slack {
+		for i := range out {
+			out[i].StartS, out[i].EndS = math.Min(out[i].StartS, b), math.Min(out[i].EndS, b)
+		}
+	}
+	return slices.DeleteFunc(out, func(sp model.Span) bool { return sp.EndS <= sp.StartS && (a < b || sp.EndS < sp.StartS) })
+}
+
+// surroundings are what is known of the medium beside a record.
+type surroundings struct {
+	m      *model.Trace
+	lo, hi []float64 // extremes of its readings up to each
+	stepS  float64
+	hole   float64 // where its first hole begins, s; +Inf for none
+}
+
+// newSurroundings prepares the recorded medium; it may be nil.
+func newSurroundings(r *model.Recording) *surroundings {
+	s := &surroundings{m: r.Medium, hole: math.Inf(1)}
+	if s.m == nil || len(s.m.TimesS) == 0 || len(s.m.TimesS) != len(s.m.C) {
+		s.m = nil
+		return s
+	}
+	s.stepS = usualStep(s.m.TimesS)
+	s.lo, s.hi = append([]float64(nil), s.m.C...), append([]float64(nil), s.m.C...)
+	for i := 1; i < len(s.lo); i++ {
+		s.lo[i], s.hi[i] = math.Min(s.lo[i], s.lo[i-1]), math.Max(s.hi[i], s.hi[i-1])
+		if s.m.TimesS[i]-s.m.TimesS[i-1] > farBeyond*s.stepS+sameS && math.IsInf(s.hole, 1) {
+			s.hole = s.m.TimesS[i-1]
+		}
+	}
+	return s
+}
+
+// bounds are between which temperatures the place may have been in a gap between the readings i and k. No place of a food passes the
+// range of what the food was at and of all surroundings that it has had since (maximum principle): after a cook, places beside the
+// probe may be hotter than it and than the air, and it rises. So the medium counts from the start of the record, not of the gap.
+// Where the medium was not recorded, the range known of it counts; where none is, that of the whole record.
+func (s *surroundings) bounds(r *model.Recording, u *tube, i, k int, iv interval) (lo, hi float64) {
+	lo, hi = math.Min(r.C[i], r.C[k]), math.Max(r.C[i], r.C[k])
+	slack := farBeyond * s.stepS
+	if s.m != nil && s.hole >= iv.b && s.m.TimesS[0] <= r.TimesS[0]+slack && s.m.TimesS[0] <= iv.a+slack && s.m.TimesS[len(s.m.TimesS)-1] >= iv.b-slack {
+		n := min(sort.SearchFloat64s(s.m.TimesS, iv.b), len(s.m.TimesS)-1)
+		lo, hi = math.Min(lo, math.Min(s.lo[n], r.C[0])), math.Max(hi, math.Max(s.hi[n], r.C[0]))
+		return math.Min(lo, u.soFar.lo), math.Max(hi, u.soFar.hi)
+	}
+	switch {
+	case !math.IsNaN(r.LowC) && !math.IsNaN(r.HighC):
+		return math.Min(lo, r.LowC), math.Max(hi, r.HighC)
+	case i == k:
+		return anyLowC, anyHighC
+	}
+	return math.Min(lo, u.lowest), math.Max(hi, u.most)
+}
+
+// course writes the course of a way through the tube into buf, with the gaps for which open says no as straight lines.
+func (u *tube) course(buf *path, w way, open func(gap int) bool) path {
+	t, c := buf.t[:0], buf.c[:0]
+	keep := -1 // the last knot that may not be left out
+	emit := func(x, y float64) {
+		if m := len(c); m >= 2 && c[m-1] == y && c[m-2] == y && m-1 > keep {
+			t[m-1] = x
+			return
+		}
+		t, c = append(t, x), append(c, y)
+	}
+	before := choice{straight: true}
+	var eps float64
+	f, kp, rg := 0, 0, 0
+	last := len(u.t) - 1
+	for i := 0; i <= last; i++ {
+		now := before
+		eps2 := eps
+		if i < last {
+			dt := u.t[i+1] - u.t[i]
+			eps2 = math.Min(jumpS, dt/8)
+			lo, hi := u.c[i], u.c[i+1]
+			if lo > hi {
+				lo, hi = hi, lo
+			}
+			inGap, closed := false, false
+			if rg < len(u.ranges) && u.ranges[rg].i == i {
+				x := u.ranges[rg]
+				rg++
+				inGap, closed = x.gap >= 0, x.gap >= 0 && !open(x.gap)
+				lo, hi = x.lo, x.hi
+			}
+			if closed {
+				now = choice{straight: true}
+			} else {
+				now = w(i, lo, hi, inGap)
+			}
+			if i == 0 {
+				before = now
+			}
+		}
+		v := u.c[i]
+		if f < len(u.free) && u.free[f] == i {
+			f++
+			if !before.straight && !now.straight && before.level == now.level {
+				v = before.level
+			}
+		}
+		if i > 0 && !before.straight && before.level != v {
+			emit(u.t[i]-eps, before.level)
+		}
+		emit(u.t[i], v)
+		if kp < len(u.kept) && u.kept[kp] == i {
+			kp++
+			keep = len(t) - 1
+		}
+		if i < last && !now.straight {
+			for n := 0; n < now.visits; n++ {
+				emit(u.t[i]+float64(n+1)*eps2, now.visit[n])
+			}
+			if now.visits > 0 || now.level != v {
+				emit(u.t[i]+float64(now.visits+1)*eps2, now.level)
+			}
+		}
+		before, eps = now, eps2
+	}
+	buf.t, buf.c = t, c
+	return path{t: t, c: c}
+}
+
+// line is the course of straight segments.
+func line(int, float64, float64, bool) choice { return choice{straight: true} }
+
+// low and high are the coldest and the warmest course.
+func low(_ int, lo, _ float64, _ bool) choice  { return at(lo) }
+func high(_ int, _, hi float64, _ bool) choice { return at(hi) }
