@@ -156,9 +156,8 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 		return nil, fault(rec, "What it measured", rec.Measured, st.Name+" has no surroundings with a temperature", "name another step")
 	}
 	from, to, ended := 0.0, 0.0, false
-	at := 0.0
 	for _, s := range rec.Starts {
-		t, wrong := startOf(rec, log, &s, at)
+		t, wrong := startOf(rec, log, &s)
 		if wrong != nil {
 			return nil, wrong
 		}
@@ -175,7 +174,6 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 		case i == air.step+1:
 			to, ended = t, true
 		}
-		at = t
 	}
 	air.durationS = lengths[air.step]
 	if ended {

@@ -86,7 +86,7 @@ func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths 
 		if s.End {
 			i = len(steps)
 		}
-		t, wrong := startOf(rec, log, &s, at)
+		t, wrong := startOf(rec, log, &s)
 		if wrong != nil {
 			return nil, wrong
 		}
@@ -160,8 +160,8 @@ func stepNamed(steps []model.Step, name string) int {
 
 const day = 24 * time.Hour
 
-// startOf is a start in s from the first reading; after is the one before it.
-func startOf(rec *workbook.Record, log *record.Log, s *workbook.Start, after float64) (float64, *cell.Error) {
+// startOf is a start in s from the first reading.
+func startOf(rec *workbook.Record, log *record.Log, s *workbook.Start) (float64, *cell.Error) {
 	switch {
 	case s.Typed != "" && !s.Clock && !s.Elapsed: // a step alone: at the first reading
 		return 0, nil
@@ -180,12 +180,16 @@ func startOf(rec *workbook.Record, log *record.Log, s *workbook.Start, after flo
 		return t, nil
 	}
 	end := log.TimesS[len(log.TimesS)-1]
-	if log.Dated && end > day.Seconds() {
-		return 0, fault(rec, "Starts at", s.Typed, "has no date, and the record is longer than a day", "write the date too, as 2026-11-03 09:12")
+	if end > day.Seconds() {
+		mend := "write the date too, as 2026-11-03 09:12"
+		if !log.Dated {
+			mend = "write the time after the first reading, such as 20 min"
+		}
+		return 0, fault(rec, "Starts at", s.Typed, "has no date, and the record is longer than a day", mend)
 	}
 	h, m, sec := log.Start.Clock()
 	t := (s.After - time.Duration(h)*time.Hour - time.Duration(m)*time.Minute - time.Duration(sec)*time.Second).Seconds()
-	for t < after {
+	if t < 0 { // after midnight
 		t += day.Seconds()
 	}
 	if t > end {

@@ -356,10 +356,15 @@ func (ls *limits) appliesTo(l *Line, lim *rules.Limit) *scope {
 	typed := l.Words("Applies to")
 	head, family, named := strings.Cut(typed, ":")
 	switch {
+	case Key(typed) == "all":
+		lim.Applies.All = true
+	case ls.loose != nil && ls.blind() && typed != "":
+		l.Remark(cell.Warning, "Applies to", typed, appliesElsewhere)
+	}
+	switch {
 	case typed == "" || ls.blind():
 		return ls.scope("", nil)
 	case Key(typed) == "all":
-		lim.Applies.All = true
 		return ls.scope("all", ls.products)
 	case named && Key(head) == "family":
 		ps := ls.families[Key(family)]

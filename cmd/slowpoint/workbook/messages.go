@@ -189,6 +189,7 @@ var (
 	clockNoUnit      = saying{"does not say the unit of its temperature", "type it as crossing of 60 °C or crossing of 140 °F"}
 	notAltitude      = saying{"is not an altitude between −500 and 6000 m", "type the height above the sea, such as 350 m"}
 	noCitation       = saying{"{1} {2} missing", "name the document, clause and edition that the limit comes from; the report's front page says that it is missing"}
+	appliesElsewhere = saying{"is not whom the record is of, so the limit is left out", "write all if it is for this food too"}
 	recordOutside    = saying{"leads out of the plan's folder, from which alone records are read", "put the file into the folder of the plan, and type its path from there"}
 	recordProcess    = saying{"is not the process of {1}, which is {2}", "correct it, or leave it blank"}
 	recordOfNone     = saying{"Neither Product nor Process says whose record it is", "name the product that was probed, or, for a medium, the process"}

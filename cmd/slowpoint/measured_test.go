@@ -1,0 +1,265 @@
+package main
+
+import (
+	"fmt"
+	"math"
+	"math/rand/v2"
+	"os"
+	"path/filepath"
+	"strings"
+	"testing"
+	"time"
+
+	"slowpoint/cmd/slowpoint/record"
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model"
+	"slowpoint/rules"
+)
+
+// TestLaidOut: steps begin as a record's row says, and where it says nothing they are as long as in the plan.
+func TestLaidOut(t *testing.T) {
+	steps := []model.Step{{Name: "Oven"}, {Name: "Rest"}, {Name: "Chill"}}
+	lengths := []float64{600, 120, 1200}
+	clock := func(h, m int) time.Duration { return time.Duration(h)*time.Hour + time.Duration(m)*time.Minute }
+	evening := time.Date(2026, 1, 19, 23, 50, 0, 0, time.UTC)
+	day := time.Date(2026, 1, 20, 0, 0, 0, 0, time.UTC)
+	for _, c := range []struct {
+		name   string
+		starts []workbook.Start
+		long   float64 // the last reading, s after the first
+		first  int
+		want   []float64
+		fault  string
+	}{
+		{"nothing said", nil, 3000, 0, []float64{0, 600, 720, 3000}, ""},
+		{"the record ends early", nil, 650, 0, []float64{0, 600, 650}, ""},
+		{"from a later step", []workbook.Start{{Step: "Chill", Typed: "Chill"}}, 900, 2, []float64{0, 900}, ""},
+		{"over midnight", []workbook.Start{{Step: "Oven", Clock: true, After: clock(23, 55), Typed: "Oven 23:55"}, {Step: "Chill", Clock: true, After: clock(0, 10), Typed: "Chill 00:10"}},
+			3600, 0, []float64{300, 900, 1200, 3600}, ""},
+		{"with its date", []workbook.Start{{Step: "Chill", Clock: true, Date: day, After: clock(0, 10), Typed: "Chill 2026-01-20 00:10"}}, 3600, 2, []float64{1200, 3600}, ""},
+		{"to its end", []workbook.Start{{Step: "Rest", Elapsed: true, After: time.Minute, Typed: "Rest 1 min"}, {End: true, Elapsed: true, After: 10 * time.Minute, Typed: "end 10 min"}},
+			3600, 1, []float64{60, 180, 600}, ""},
+		{"longer than it could be", []workbook.Start{{Step: "Oven", Typed: "Oven"}, {Step: "Chill", Elapsed: true, After: 300 * time.Second, Typed: "Chill 300 s"}},
+			3600, 0, nil, "Rest would begin by the plan's durations at 2026-01-20 00:00:00, which is after Chill began"},
+		{"before the record", []workbook.Start{{Clock: true, Date: day.AddDate(0, 0, -1), After: clock(23, 0), Typed: "2026-01-19 23:00"}}, 3600, 0, nil, "is before the first reading, at 2026-01-19 23:50:00"},
+		{"after the record", []workbook.Start{{Clock: true, After: clock(12, 0), Typed: "12:00"}}, 3600, 0, nil, "lies outside the readings, which go from 2026-01-19 23:50:00 to 2026-01-20 00:50:00"},
+		{"a day too many", []workbook.Start{{Clock: true, After: clock(0, 10), Typed: "00:10"}}, 90000, 0, nil, "has no date, and the record is longer than a day"},
+		{"the end alone", []workbook.Start{{End: true, Elapsed: true, After: time.Minute, Typed: "end 1 min"}}, 3600, 0, nil, "says when the chain ended, and not when it began"},
+	} {
+		log := &record.Log{Start: evening, Dated: true, TimesS: []float64{0, c.long}}
+		got, wrong := laidOut(&workbook.Record{Starts: c.starts}, log, steps, lengths)
+		switch {
+		case wrong != nil && (c.fault == "" || !strings.HasPrefix(wrong.Msg, c.fault)):
+			t.Errorf("%s: %s, want %q", c.name, wrong.Msg, c.fault)
+		case wrong == nil && c.fault != "":
+			t.Errorf("%s: no error, want %q", c.name, c.fault)
+		case wrong == nil && (got.first != c.first || fmt.Sprint(got.startS) != fmt.Sprint(c.want)):
+			t.Errorf("%s: from step %d at %v, want %d at %v", c.name, got.first, got.startS, c.first, c.want)
+		}
+	}
+	if _, wrong := laidOut(&workbook.Record{Starts: []workbook.Start{{Clock: true, Typed: "09:00"}}}, &record.Log{TimesS: []float64{0, 60}}, steps, lengths); wrong == nil {
+		t.Error("a clock is taken for a file that has none")
+	}
+}
+
+// TestSimplified: the straight lines that stand for readings stay near them, and keep both ends.
+func TestSimplified(t *testing.T) {
+	rng := rand.New(rand.NewPCG(5, 8))
+	for range 50 {
+		c := model.Course{Name: "air"}
+		x, y := 0.0, 3.0
+		for range 2 + rng.IntN(400) {
+			c.TimesS, c.C = append(c.TimesS, x), append(c.C, y)
+			x += 5 + 50*rng.Float64()
+			y += 0.3 * rng.NormFloat64() * float64(rng.IntN(2))
+		}
+		s := simplified(c)
+		n := len(c.TimesS)
+		if s.TimesS[0] != 0 || s.TimesS[len(s.TimesS)-1] != c.TimesS[n-1] {
+			t.Fatal("an end is gone")
+		}
+		k := 0
+		for i := range n {
+			for s.TimesS[k+1] < c.TimesS[i] {
+				k++
+			}
+			f := (c.TimesS[i] - s.TimesS[k]) / (s.TimesS[k+1] - s.TimesS[k])
+			if d := math.Abs(s.C[k] + f*(s.C[k+1]-s.C[k]) - c.C[i]); d > simplifyK+1e-9 {
+				t.Fatalf("%g K from a reading", d)
+			}
+		}
+	}
+}
+
+// logFile writes a logger's file of minutes and °C into a folder.
+func logFile(t *testing.T, folder, name string, minutes, c []float64) {
+	t.Helper()
+	var b strings.Builder
+	b.WriteString("Elapsed (min),Air (°C)\n")
+	for i := range minutes {
+		fmt.Fprintf(&b, "%g,%.2f\n", minutes[i], c[i])
+	}
+	if err := os.WriteFile(filepath.Join(folder, name), []byte(b.String()), 0o644); err != nil {
+		t.Fatal(err)
+	}
+}
+
+// withAir gives a runner a record of the air of its only step.
+func withAir(t *testing.T, r *runner, minutes, c []float64, accuracyK float64) {
+	t.Helper()
+	dir := t.TempDir()
+	logFile(t, dir, "air.csv", minutes, c)
+	r.plan.Records = []workbook.Record{{Name: "Air", Products: []*workbook.Product{&r.plan.Products[0]}, File: "air.csv", Time: "Elapsed (min)", Temperature: "Air (°C)",
+		Measured: "medium of bath", Of: workbook.OfMedium, Step: "bath", AccuracyK: &accuracyK, Sound: true}}
+	r.logs = newLogs(r.plan, dir)
+}
+
+// minutes are the whole minutes up to and with n, and a temperature at each.
+func minutesOf(n int, c func(m int) float64) (at, what []float64) {
+	for m := 0; m <= n; m++ {
+		at, what = append(at, float64(m)), append(what, c(m))
+	}
+	return at, what
+}
+
+// TestDeviateAsPlanned: air that was as planned leaves the margins where they were, but for the accuracy of the instrument; warmer air shifts
+// the whole course of a food of constant properties, for it is linear: 1 K of air and of start together is 1 K of margin.
+func TestDeviateAsPlanned(t *testing.T) {
+	const film, medium, start = 25.0, 2.0, 60.0
+	for _, c := range []struct{ air, accuracy float64 }{{medium, 0}, {medium, 0.5}, {medium + 1, 0}} {
+		r, p := slabRunner(model.Cool, 0.04, start, medium, film, 2*3600, coolTo(8, 2*3600))
+		at, air := minutesOf(125, func(m int) float64 { return c.air + 0.01*float64(m%2) }) // a constant channel is refused
+		withAir(t, r, at, air, c.accuracy)
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		v := r.deviate(p, out)
+		if v == nil || len(v.Judgement.Findings) != 1 {
+			t.Fatalf("no deviation: %+v", v)
+		}
+		for _, m := range v.Records {
+			if m.Problems.Faults() > 0 {
+				t.Fatal(m.Problems)
+			}
+		}
+		before, after := *out.Judgement.Findings[0].MarginK, *v.Judgement.Findings[0].MarginK
+		warmer := c.air + c.accuracy + simplifyK + 0.005 - medium // with half of the resolution
+		want := -warmer * (1 - centreLeft(0.04, film, 2*3600))
+		if got := after - before; math.Abs(got-want) > 0.02 {
+			t.Errorf("air of %g °C ± %g K: the margin moves by %.3f K, want %.3f", c.air, c.accuracy, got, want)
+		}
+	}
+}
+
+// TestDeviateGap: what the air did in a gap nobody knows; the whole range of the record is judged, and the less favourable end counts.
+func TestDeviateGap(t *testing.T) {
+	margin := func(from, to int) float64 {
+		r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 2*3600, coolTo(8, 2*3600))
+		var at, air []float64
+		for m := 0; m <= 125; m++ {
+			if m > from && m < to {
+				continue
+			}
+			c := 2.0
+			if m >= 115 { // once it was warm, at the end
+				c = 12
+			}
+			at, air = append(at, float64(m)), append(air, c)
+		}
+		withAir(t, r, at, air, 0)
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		v := r.deviate(p, out)
+		return *v.Judgement.Findings[0].MarginK
+	}
+	whole, gap := margin(0, 0), margin(30, 90)
+	if gap > whole-1 {
+		t.Errorf("an hour without readings, in which the air may have been as warm as it once was, leaves a margin of %.2f K, and the whole log %.2f K", gap, whole)
+	}
+}
+
+// TestDeviateRefuses what does not cover its step.
+func TestDeviateRefuses(t *testing.T) {
+	r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 2*3600, coolTo(8, 2*3600))
+	at, air := minutesOf(60, func(int) float64 { return 2 })
+	air[3] = 2.4
+	withAir(t, r, at, air, 0)
+	out, err := r.judged(p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	v := r.deviate(p, out)
+	if v.Judgement.Verdict != rules.CannotTell || v.Records[0].Problems.Faults() != 1 || !strings.Contains(v.Records[0].Problems[0].Msg, "ends at 1 h after the first reading, and bath needs it up to 2 h") {
+		t.Errorf("%v: %v", v.Judgement.Verdict, v.Records[0].Problems)
+	}
+}
+
+// TestAgainst: a record that is the prediction at its centre lies on it; one that is 2 K colder lies 2 K from it, on the unfavourable side
+// while heated.
+func TestAgainst(t *testing.T) {
+	for _, off := range []float64{0, -2} {
+		r, p := slabRunner(model.Cook, 0.04, 5, 90, 60, 3600, heatTo(70))
+		p.Points = []model.Point{{Name: "probe", Place: model.Place{UpM: 0.005}}}
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		dir := t.TempDir()
+		at, c := minutesOf(60, func(m int) float64 { return out.History.At(model.Place{UpM: 0.005}, float64(m)*60) + off })
+		logFile(t, dir, "probe.csv", at, c)
+		accuracy := 0.3
+		r.plan.Records = []workbook.Record{{Name: "R", Products: []*workbook.Product{p}, File: "probe.csv", Time: "Elapsed (min)", Temperature: "Air (°C)", Measured: "probe",
+			Of: workbook.AtPoint, Place: p.Points[0], AccuracyK: &accuracy, Sound: true}}
+		r.logs, r.fit = newLogs(r.plan, dir), fitting{film: off == 0}
+		r.measure(p, out)
+		m := out.Measured[0]
+		if m.History == nil || m.Against == nil {
+			t.Fatal(m.Problems)
+		}
+		a := m.Against
+		if math.Abs(a.BiasK-off) > 0.005 || math.Abs(a.RMSK-math.Abs(off)) > 0.006 || math.Abs(a.ColderK-max(-off, 0)) > 0.01 || a.WarmerK != 0 {
+			t.Errorf("off by %g K: bias %g, root mean square %g, colder %g, warmer %g", off, a.BiasK, a.RMSK, a.ColderK, a.WarmerK)
+		}
+		slow := 0.0
+		for i := range a.TimesS {
+			slow = max(slow, a.C[i]-out.History.At(model.Place{}, a.TimesS[i]))
+		}
+		if slow < 0.5 || math.Abs(a.SlowestK-slow) > 0.01 {
+			t.Errorf("the slowest place lies %g K below the probe, want %g", a.SlowestK, slow)
+		}
+		if off == 0 && (len(a.Fitted) != 1 || a.Fitted[0].Low > 60 || a.Fitted[0].High < 60 || math.Abs(a.Fitted[0].Value-60) > 0.5) {
+			t.Errorf("fitted %+v, want a film of 60 W/(m²·K)", a.Fitted)
+		}
+		if want := 0.3 + m.ResolutionK/2; math.Abs(m.History.ErrorK-want) > 1e-9 {
+			t.Errorf("the error counted is %g K, want %g", m.History.ErrorK, want)
+		}
+	}
+}
+
+// TestFittedChangesNoVerdict of a record or of the prediction.
+func TestFittedChangesNoVerdict(t *testing.T) {
+	verdicts := func(f fitting) string {
+		r, p := slabRunner(model.Cook, 0.04, 5, 90, 60, 3600, heatTo(70))
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		dir := t.TempDir()
+		at, c := minutesOf(60, func(m int) float64 { return out.History.At(model.Place{}, float64(m)*60) * 0.8 })
+		logFile(t, dir, "probe.csv", at, c)
+		r.plan.Records = []workbook.Record{{Name: "R", Products: []*workbook.Product{p}, File: "probe.csv", Time: "Elapsed (min)", Temperature: "Air (°C)", Measured: "slowest point",
+			Of: workbook.AtSlowest, Sound: true}}
+		r.logs, r.fit = newLogs(r.plan, dir), f
+		r.measure(p, out)
+		if f.film && len(out.Measured[0].Against.Fitted) == 0 {
+			t.Error("nothing was fitted: " + out.Measured[0].Against.NotFitted)
+		}
+		return fmt.Sprint(out.Judgement.Verdict, out.Measured[0].Judgement.Verdict)
+	}
+	if a, b := verdicts(fitting{}), verdicts(fitting{film: true, conductivity: true}); a != b || !strings.HasSuffix(a, "not met") {
+		t.Errorf("%s without a fit and %s with it; want a record that is not met", a, b)
+	}
+}
