@@ -34,6 +34,7 @@ type field struct {
 	kind    workbook.Kind // of text files always Text, or Blank
 	form    workbook.Form
 	shows   workbook.Display
+	shown   string // words that the number format shows behind the number
 	formula bool
 }
 
@@ -71,12 +72,12 @@ func (r *row) last() int {
 
 // lineReader gives the lines of a text without holding it.
 type lineReader struct {
-	r          io.Reader
-	buf        []byte
-	from, to   int
-	ended      bool
-	eol        byte
-	unfinished error
+	r        io.Reader
+	buf      []byte
+	from, to int
+	ended    bool
+	eol      byte
+	zeros    bool // long runs of zero bytes were passed over
 }
 
 func newLineReader(r io.Reader, eol byte) *lineReader {
@@ -102,7 +103,11 @@ func (l *lineReader) next() ([]byte, error) {
 			return line, nil
 		}
 		if seen > mostLine {
-			return nil, errLong
+			if len(bytes.Trim(l.buf[l.from:l.to], "\x00")) > 0 {
+				return nil, errLong
+			}
+			l.zeros = true // a file of which only the size was written
+			l.from, l.to, seen = 0, 0, 0
 		}
 		if l.from > 0 {
 			copy(l.buf, l.buf[l.from:l.to])

@@ -150,6 +150,9 @@ func (r *reader) table() {
 		return
 	}
 	t.finish()
+	if f, isText := r.src.(*text); isText && f.zeros {
+		r.tells.tell(zeroEnd, cell.Note, "", f.lines, 0, "")
+	}
 	r.make(t)
 }
 
@@ -255,9 +258,9 @@ func (t *taker) between() {
 		end = spanOf(to)
 	}
 	if a == b {
-		t.r.problems.Add(nothingLeft.problem(set.Cells[setFile], cell.Fault, setFile, "", spanOf(from), end))
+		t.r.problems.Add(nothingLeft.problem(set.Cells[setStart], cell.Fault, setStart, "", spanOf(from), end))
 	} else if b-a < all {
-		t.r.problems.Add(cut.problem(set.Cells[setFile], cell.Note, setFile, "", fmt.Sprint(all-(b-a)), fmt.Sprint(all), spanOf(from), end))
+		t.r.problems.Add(cut.problem(set.Cells[setStart], cell.Note, setStart, "", fmt.Sprint(all-(b-a)), fmt.Sprint(all), spanOf(from), end))
 	}
 }
 

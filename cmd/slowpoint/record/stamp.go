@@ -1,6 +1,7 @@
 package record
 
 import (
+	"bytes"
 	"strings"
 	"unicode"
 	"unicode/utf8"
@@ -135,6 +136,9 @@ func readStamp(b []byte) stamp {
 
 // started reads a stamp that starts with a digit, but is no plain number.
 func (c *cursor) started() (s stamp, ok bool) {
+	if c.compact(&s) {
+		return s, true
+	}
 	n, width := c.digits()
 	switch sep := c.peek(); {
 	case sep == ':':
@@ -146,6 +150,50 @@ func (c *cursor) started() (s stamp, ok bool) {
 		return s, c.dayMonth(&s, n, width) && c.dayTime(&s)
 	}
 	return s, false
+}
+
+// compact reads a date without signs between its parts, with a clock behind: 20260211140557, 20260211T140557Z.
+func (c *cursor) compact(s *stamp) bool {
+	run := 0
+	for run < len(c.b) && c.b[run] >= '0' && c.b[run] <= '9' {
+		run++
+	}
+	if run != 14 && (run != 8 || len(c.b) < 13 || !strings.ContainsRune("Tt_ ", rune(c.b[8])) || c.b[9] < '0' || c.b[9] > '9') {
+		return false
+	}
+	clock := c.b[8:]
+	if run == 8 {
+		clock = c.b[9:]
+	}
+	if bytes.IndexByte(clock, ':') >= 0 {
+		if !s.plainDate(c.b[:8]) {
+			return false
+		}
+		c.i = 8
+		return c.dayTime(s)
+	}
+	k := cursor{b: clock}
+	n, w := k.digits()
+	if w != 6 || n/10000 > 24 || n/100%100 > 59 || n%100 > 60 || !s.plainDate(c.b[:8]) {
+		return false
+	}
+	s.form, s.dated, s.timed, s.groups = dateStamp, true, true, 3
+	s.sec = float64(n/10000*3600 + n/100%100*60 + n%100)
+	c.b, c.i = clock, k.i
+	return c.after(s)
+}
+
+// plainDate reads eight digits as year, month and day.
+func (s *stamp) plainDate(b []byte) bool {
+	n := int32(0)
+	for _, d := range b {
+		if d < '0' || d > '9' {
+			return false
+		}
+		n = 10*n + int32(d-'0')
+	}
+	s.date, s.width, s.order = [3]int32{n / 10000, n / 100 % 100, n % 100}, [3]int8{4, 2, 2}, yearFirst
+	return len(b) == 8
 }
 
 // worded reads a stamp that starts with a word: a day of the week, a month, before or after noon.

@@ -3,6 +3,7 @@ package record
 import (
 	"bytes"
 	"fmt"
+	"strconv"
 	"strings"
 
 	"slowpoint/cmd/slowpoint/workbook"
@@ -20,9 +21,9 @@ type taker struct {
 	groups int8      // of clocks: 2 or 3
 	half   bool      // a clock says before or after noon
 	zoned  bool
-	east   int32 // of the zone of the first time
-	spread bool  // zones differ
-	most   float64
+	east   int32   // of the zone of the first time
+	spread bool    // zones differ
+	most   float64 // of the times
 
 	secs, cs     []float64 // of each reading: s of its day or as typed; its temperature as typed
 	lines, dates []int32   // its line; its date in seen, -1 if it has none
@@ -42,13 +43,12 @@ type taker struct {
 	lacking  tally // missing words
 	blanks   tally // blank readings
 	beyond   tally // outside of what is possible
-	sentinel map[float64]int
 	formulas tally
 	events   int
 	pending  []pendingRow // rows that are no readings, since the last reading
-	dropped  int          // more of them
 	until    int32        // line of the last reading or missing one
-	firstAt  int32
+	firstAt  int32        // and of the first
+	ended    bool         // another table begins
 	echo     echoes
 }
 
@@ -90,21 +90,26 @@ const mostPending = 50
 
 // take reads one row.
 func (t *taker) take(r *row) error {
-	if r.n < t.lay.first {
+	if r.n < t.lay.first || t.ended {
 		return nil
 	}
 	if t.rows > mostRows {
 		return errMany
 	}
+	if r.zeros {
+		t.tell(zeroBytes, r.n, 0, "")
+		return nil
+	}
 	if r.blank() {
-		if r.zeros {
-			t.tell(zeroBytes, r.n, 0, "")
-		}
 		return nil
 	}
 	last := r.last()
 	at, temp := r.at(t.lay.time), r.at(t.lay.temp)
-	if len(at.b) == 0 && at.kind != workbook.NoStored {
+	if at.kind == workbook.NoStored {
+		t.tell(noStored, r.n, t.lay.time, "")
+		return nil
+	}
+	if len(at.b) == 0 {
 		t.timeless(r, temp)
 		return nil
 	}
@@ -113,14 +118,14 @@ func (t *taker) take(r *row) error {
 		t.noReading(r, at, temp)
 		return nil
 	}
-	if len(t.pending) > 0 {
-		t.resume(r.n)
+	if len(t.pending) > 0 && !t.resume(r.n) {
+		return nil
 	}
 	t.rows++
 	t.until = r.n
 	switch {
-	case r.zeros:
-		t.tell(zeroBytes, r.n, 0, "")
+	case r.hidden:
+		t.tell(hiddenRow, r.n, 0, "")
 		return nil
 	case r.quotes:
 		t.tell(badQuote, r.n, 0, "")
@@ -194,7 +199,6 @@ func (t *taker) noReading(r *row, at, temp *field) {
 
 func (t *taker) wait(r *row, p pendingRow) {
 	if len(t.pending) == mostPending {
-		t.dropped++
 		return
 	}
 	k := keep(r)
@@ -203,8 +207,8 @@ func (t *taker) wait(r *row, p pendingRow) {
 }
 
 // resume decides what the rows were that are followed by a reading: remarks are skipped, the headings of another table end the reading,
-// anything else is wrong.
-func (t *taker) resume(line int32) {
+// anything else is wrong. False if the table has ended.
+func (t *taker) resume(line int32) bool {
 	for _, p := range t.pending {
 		switch {
 		case p.known:
@@ -212,13 +216,15 @@ func (t *taker) resume(line int32) {
 		case p.titled:
 			w := t.r.src.word()
 			t.tell(twoTables, p.line, 0, "", t.r.src.holder(), fmt.Sprintf("%ss %d to %d", w, t.lay.first, t.until), t.r.row(line))
+			t.ended = true
 		case p.time == "":
 			t.tell(timeLacks, p.line, t.lay.time, "")
 		default:
 			t.tell(notTime, p.line, t.lay.time, p.time)
 		}
 	}
-	t.pending, t.dropped = t.pending[:0], 0
+	t.pending = t.pending[:0]
+	return !t.ended
 }
 
 // stamp reads the time of a row; false if it is none.
@@ -232,7 +238,10 @@ func (t *taker) stamp(r *row) (stamp, bool) {
 		if t.swap {
 			s, c = c, s
 		}
-		if s.form != dateStamp || c.form == noStamp || c.form == numberStamp {
+		if s.form == numberStamp && s.plainDate(plainBlanks(r.at(t.dateCol()).b)) {
+			s.form, s.dated = dateStamp, true
+		}
+		if s.form != dateStamp || c.form == noStamp || c.form == numberStamp || s.sec != 0 && s.sec != c.sec {
 			return s, false
 		}
 		s.sec, s.timed, s.groups, s.half, s.zoned, s.east = c.sec, c.timed, c.groups, c.half, c.zoned, c.east
@@ -272,6 +281,7 @@ func (t *taker) reading(r *row, s stamp, temp *field) {
 	if !ok {
 		return
 	}
+	t.most = max(t.most, s.sec)
 	t.secs = append(t.secs, s.sec-float64(s.east))
 	t.cs = append(t.cs, x)
 	t.lines = append(t.lines, r.n)
@@ -349,7 +359,10 @@ func (t *taker) value(r *row, f *field) (float64, bool) {
 		t.tells(r, f)
 		return 0, false
 	}
-	v, rest := readNumber(f.b)
+	v, rest := readNumber(asStored(f))
+	if f.shown != "" && len(rest) == 0 {
+		rest = []byte(f.shown)
+	}
 	if len(rest) > 0 || v.bad != fine {
 		s := scaleOf(inUTF8(rest))
 		switch {
@@ -391,6 +404,19 @@ good:
 	}
 	t.step.add(v)
 	return v.x, true
+}
+
+// asStored gives a stored number of a workbook as it was meant: 63.3 for 63.299999999999997, which has no more than 15 digits that count.
+func asStored(f *field) []byte {
+	if f.kind != workbook.Figure || len(f.b) < 12 {
+		return f.b
+	}
+	x, err := strconv.ParseFloat(string(f.b), 64)
+	if err != nil {
+		return f.b
+	}
+	rounded, _ := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 15, 64), 64)
+	return strconv.AppendFloat(nil, rounded, 'f', -1, 64)
 }
 
 // What is taken as a temperature of food or its surroundings, °C; beyond, loggers write signs of a fault: −200, 850, 65336, 9.9E37.
@@ -442,6 +468,7 @@ func (t *taker) tells(r *row, f *field) {
 
 // finish tells what stands below the table, and what is missing.
 func (t *taker) finish() {
+	t.unseen()
 	if len(t.pending) > 0 {
 		p := t.pending[0]
 		t.r.tells.tell(belowTable, cell.Note, "", p.line, 0, p.text)

@@ -131,7 +131,7 @@ func (t *taker) clocks() bool {
 		}
 	case t.half || hasWord(name, dayWords):
 		kind = ofDay
-	case t.groups == 3 && (hasWord(name, spanWords) || t.secs[0] == 0):
+	case t.groups == 3 && (hasWord(name, spanWords) || t.secs[0] == 0 || t.most >= 86400):
 		kind = spans
 	case t.groups == 3 || t.wraps():
 		kind = ofDay
@@ -147,6 +147,11 @@ func (t *taker) clocks() bool {
 			t.secs[i] /= 60
 		}
 	case ofDay:
+		if d := t.lay.dates; d > 0 {
+			both := t.lay.heading(d) + " + " + name
+			t.r.problems.Add(needsDate.problem(t.r.set.Cells[setTime], cell.Fault, setTime, t.r.set.Time, cell.ColumnName(d), both))
+			return false
+		}
 		t.midnights()
 		t.r.clock = true
 	}

@@ -124,7 +124,7 @@ func titleOf(raw string) title {
 
 // isUnit tells whether a word is a unit that this reader knows, or one of something else that it must not take for a temperature.
 func isUnit(word string) bool {
-	return scaleOf(word) != nil || timeUnit(word) != nil || patternOf(word) != 0
+	return scaleOf(word) != nil || timeUnit(word) != nil || patternOf(word) != 0 || zoneIn(word) != ""
 }
 
 // An order of day, month and year; as a mask, several that are possible.
