@@ -12,8 +12,9 @@ import (
 
 // How many equal readings are more than a steady temperature explains.
 const (
-	constantLeast = 20 // of a whole record
-	frozenLeast   = 60 // in a row
+	constantLeast = 20   // of a whole record
+	frozenLeast   = 60   // in a row
+	frozenS       = 1800 // and s from the first to the last of them
 )
 
 // constant refuses a channel that never moves although it shows more than whole degrees; one of whole degrees may be steady.
@@ -134,7 +135,7 @@ func (r *reader) stopped(t *taker) {
 			from, most = i, j-i
 		}
 	}
-	if most < frozenLeast || most == len(c) || r.log.ResolutionK > fineStep {
+	if most < frozenLeast || most == len(c) || r.log.ResolutionK > fineStep || r.log.TimesS[from+most-1]-r.log.TimesS[from] < frozenS {
 		return
 	}
 	r.tells.tell(frozen, cell.Warning, "", r.log.Lines[from], t.lay.temp, shownC(c[from]), fmt.Sprint(most), r.row(r.log.Lines[from+most-1]))

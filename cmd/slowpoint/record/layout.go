@@ -224,13 +224,16 @@ func (l *layout) lookForDates(head []kept, first int) {
 // most.
 func (r *reader) oneRun(l *layout, names *kept) bool {
 	of := runName(names.word(l.time))
-	nearest := 0
-	for c := 1; c < l.temp; c++ {
-		if of != "" && runName(names.word(c)) == of {
+	nearest, between := 0, 0
+	for c := l.time + 1; c < l.temp; c++ {
+		switch name := runName(names.word(c)); {
+		case name == of && between > 0:
 			nearest = c
+		case name != "" && name != of && c != l.clock:
+			between++
 		}
 	}
-	if nearest == 0 || nearest == l.time || nearest == l.clock {
+	if of == "" || nearest == 0 {
 		return true
 	}
 	r.problems.Add(otherRun.problem(r.set.Cells[setTemp], cell.Fault, setTemp, r.set.Temperature, cell.ColumnName(l.temp), cell.ColumnName(nearest), cell.ColumnName(l.time)))
@@ -532,8 +535,7 @@ func offsetOf(word string) (int32, error) {
 	return s.east, nil
 }
 
-// firstReading finds the first row from from on that has a time and, under the temperatures, a number or a word for none; units between are
-// taken.
+// firstReading finds the first row from from on that has a time; where there are no headings above, with a number under the temperatures.
 func (l *layout) firstReading(head []kept, from int) int {
 	for i := from; i < len(head); i++ {
 		if i > from+headBlock && l.heads > 0 {
@@ -543,8 +545,7 @@ func (l *layout) firstReading(head []kept, from int) int {
 		if !l.timed(k) {
 			continue
 		}
-		v, _ := readNumber(k.at(l.temp).b)
-		if v.bad == fine || k.at(l.temp).kind != workbook.Text || missingWord(k.at(l.temp).b) {
+		if v, _ := readNumber(k.at(l.temp).b); v.bad == fine || l.heads > 0 {
 			return i
 		}
 	}

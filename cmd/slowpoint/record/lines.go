@@ -91,6 +91,12 @@ func (l *lineReader) next() ([]byte, error) {
 		if i := bytes.IndexByte(l.buf[l.from+seen:l.to], l.eol); i >= 0 {
 			line := l.buf[l.from : l.from+seen+i]
 			l.from += seen + i + 1
+			if len(line) > mostLine {
+				if line = bytes.TrimLeft(line, "\x00"); len(line) > mostLine {
+					return nil, errLong
+				}
+				l.zeros = true
+			}
 			return line, nil
 		}
 		seen = l.to - l.from

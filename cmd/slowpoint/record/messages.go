@@ -67,7 +67,7 @@ var (
 	severalCols  = saying{"fits several columns: {1}", "give the letter of the one that is meant"}
 	askColumn    = saying{"Several columns could be meant: {1}", "name one of them in {2}"}
 	letterTwice  = saying{"is the heading of column {1} and the letter of column {2}", "write column {1} or column {2}"}
-	noColumn     = saying{"is a column beyond the last one, {1}", "correct the letter"}
+	noColumn     = saying{"is no heading with readings below that could be found, and as a letter it is beyond the last column, {1}", "correct it"}
 	sameColumn   = saying{"is the column of times too", "name the column of temperatures"}
 	otherRun     = saying{"is column {1}, behind the times of column {2}, but Time column is column {3}", "several runs stand side by side: give the times and the temperatures of one of them, by their letters"}
 	needsDate    = saying{"holds clocks only, and column {1} holds the dates", "write both, joined by a +: {2}"}
@@ -98,7 +98,8 @@ var (
 	noOrderWord  = saying{"is no order of dates", "choose from: day month year, month day year, year month day"}
 	badZone      = saying{"is no offset from UTC", "write it as UTC-07:00"}
 	otherZone    = saying{"says {1}, but the file says {2}", "find out which counts; blank takes that of the file"}
-	someZones    = saying{"has no zone, but other times have one", "export the record again"}
+	zoneLost     = saying{"has no zone, but the times above have one", "export the record again with times of one form"}
+	zoneCame     = saying{"has a zone, but the times above have none", "export the record again with times of one form"}
 	backHour     = saying{"is an hour or so before the time of {1}, {2}: the clock of the logger was set back, so an hour is there twice", "export the record in UTC, or keep the readings up to here or from here on"}
 	back         = saying{"is before the time of {1}, {2}", "export the record again, sorted by time"}
 	sameTime     = saying{"is the time of {1} too, with another reading ({2} and {3})", "take one of the two out, or, where several sensors are listed below each other, export them in columns of their own"}

@@ -75,7 +75,8 @@ func (t *text) each(take func(*row) error) error {
 			line = bytes.TrimPrefix(line, []byte("\xef\xbb\xbf"))
 		}
 		r = row{n: t.lines}
-		if r.zeros = l.zeros; bytes.IndexByte(line, 0) >= 0 {
+		r.zeros, l.zeros = l.zeros, false
+		if bytes.IndexByte(line, 0) >= 0 {
 			atEnd := l.ended && l.from == l.to
 			if line = bytes.TrimRight(line, "\x00"); atEnd {
 				t.zeros = true

@@ -143,6 +143,10 @@ func (c *cursor) started() (s stamp, ok bool) {
 	switch sep := c.peek(); {
 	case sep == ':':
 		return s, c.clock(&s, n, width, ':') && c.after(&s)
+	case sep == '.' && c.i+2 < len(c.b) && (c.b[c.i+1] >= 'A' || c.b[c.i+1] == ' ' && c.b[c.i+2] >= 'A'): // 11. Februar 2016
+		c.i++
+		c.blanks()
+		return s, c.dayMonth(&s, n, width) && c.dayTime(&s)
 	case sep == '/' || sep == '-' || sep == '.':
 		return s, c.date(&s, n, width, sep) && c.dayTime(&s)
 	case width >= 1 && width <= 2 && (sep == ' ' || sep >= 'A'):

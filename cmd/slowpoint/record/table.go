@@ -93,9 +93,6 @@ func (t *taker) take(r *row) error {
 	if r.n < t.lay.first || t.ended {
 		return nil
 	}
-	if t.rows > mostRows {
-		return errMany
-	}
 	if r.zeros {
 		t.tell(zeroBytes, r.n, 0, "")
 		return nil
@@ -120,6 +117,9 @@ func (t *taker) take(r *row) error {
 	}
 	if len(t.pending) > 0 && !t.resume(r.n) {
 		return nil
+	}
+	if t.rows == t.r.most {
+		return errMany
 	}
 	t.rows++
 	t.until = r.n
@@ -265,8 +265,11 @@ func (t *taker) reading(r *row, s stamp, temp *field) {
 	case s.form != t.form || s.form == clockStamp && s.groups != t.groups:
 		t.tell(otherForm, r.n, t.lay.time, t.typed(r), quote(t.sample))
 		return
-	case s.zoned != t.zoned:
-		t.tell(someZones, r.n, t.lay.time, t.typed(r))
+	case s.zoned && !t.zoned:
+		t.tell(zoneCame, r.n, t.lay.time, t.typed(r))
+		return
+	case t.zoned && !s.zoned:
+		t.tell(zoneLost, r.n, t.lay.time, t.typed(r))
 		return
 	}
 	if s.form == numberStamp && !t.count(r, &s) {
@@ -351,7 +354,7 @@ func (t *taker) sign(r *row, col int, sign byte) bool {
 // value reads a temperature; false if there is none.
 func (t *taker) value(r *row, f *field) (float64, bool) {
 	col := t.lay.temp
-	if f.kind == workbook.Blank || f.kind == workbook.Text && t.r.missing(f.b) || f.kind == workbook.Broken {
+	if f.kind == workbook.Blank || (f.kind == workbook.Text || f.kind == workbook.Figure) && t.r.missing(f.b) || f.kind == workbook.Broken {
 		t.noValue(r, f)
 		return 0, false
 	}
