@@ -45,7 +45,7 @@ func (s *sheet) each(take func(*row) error) error {
 			e := &in.Cells[i]
 			from := len(bytes)
 			bytes = append(bytes, e.Text...)
-			f := field{b: bytes[from:len(bytes):len(bytes)], kind: e.Kind, form: e.Form, shows: e.Shows, formula: e.Formula}
+			f := field{b: bytes[from:len(bytes):len(bytes)], kind: e.Kind, form: e.Form, shows: e.Shows, formula: e.Formula, struck: e.Struck}
 			if e.Form >= workbook.Worded {
 				if i := strings.IndexByte(g.Shown(e), ' '); i >= 0 {
 					f.shown = g.Shown(e)[i+1:]
@@ -135,6 +135,20 @@ func holds(b *workbook.Book, name string) bool {
 	found := false
 	_, err := b.Rows(name, func(*workbook.Grid, *workbook.Row) error { found = true; return errStop })
 	return found || err != nil
+}
+
+// odd tells what is wrong with how a cell looks; false if nothing is.
+func (t *taker) odd(r *row, col int) bool {
+	f := r.at(col)
+	switch {
+	case f.struck:
+		t.tell(struckCell, r.n, col, string(f.b))
+	case f.shows == workbook.Nothing, f.shows == workbook.InWords, f.shows == workbook.Thousands, f.shows == workbook.Otherwise, f.shows == workbook.Raised:
+		t.tell(shownOther, r.n, col, string(f.b))
+	default:
+		return false
+	}
+	return true
 }
 
 // unseen tells what is hidden or merged in the columns that are read.

@@ -236,6 +236,14 @@ func fillCell(t *testing.T, f *excelize.File, sheet, name, v string) {
 	m := withFormat.FindStringSubmatch(v)
 	switch {
 	case v == "":
+	case strings.HasPrefix(v, "~"): // struck through
+		x, _ = strconv.ParseFloat(v[1:], 64)
+		if err = f.SetCellValue(sheet, name, x); err == nil {
+			var style int
+			if style, err = f.NewStyle(&excelize.Style{Font: &excelize.Font{Strike: true}}); err == nil {
+				err = f.SetCellStyle(sheet, name, name, style)
+			}
+		}
 	case m != nil:
 		x, _ = strconv.ParseFloat(m[1], 64)
 		if err = f.SetCellValue(sheet, name, x); err == nil {

@@ -58,6 +58,10 @@ func (r *reader) gaps(t *taker, start float64) {
 		if d <= most+tiny {
 			continue
 		}
+		if h := t.headsBetween(log.Lines[i-1], log.Lines[i]); h > 0 {
+			t.tell(twoTables, h, 0, "", r.src.holder(), fmt.Sprintf("%ss %d to %d", r.src.word(), t.lay.first, log.Lines[i-1]), r.row(log.Lines[i]))
+			return
+		}
 		log.Gaps = append(log.Gaps, i-1)
 		s := gap
 		if t.form == dateStamp && !r.utc && math.Abs(d-3600) <= max(3*log.StepS, 60) && changeHour(instant(start+log.TimesS[i])) {
@@ -65,6 +69,16 @@ func (r *reader) gaps(t *taker, start float64) {
 		}
 		r.tells.tell(s, cell.Warning, "", log.Lines[i-1], 0, "", r.row(log.Lines[i-1]), fmt.Sprint(log.Lines[i]), spanOf(d), spanOf(log.StepS))
 	}
+}
+
+// headsBetween gives the line of headings between two lines; 0 if there are none.
+func (t *taker) headsBetween(a, b int32) int32 {
+	for _, h := range t.headsAt {
+		if a < h && h < b {
+			return h
+		}
+	}
+	return 0
 }
 
 // changeHour tells whether clocks may be set forward or back just before a time: in the small hours of a Sunday in spring or autumn.

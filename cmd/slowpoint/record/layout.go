@@ -28,7 +28,9 @@ type layout struct {
 	scale  *scale // unit of the temperatures; nil if it is not stated
 	order  order  // of dates, where a heading shows it
 	zone   string // of the clocks, as a heading shows it
-	dates  int    // a column of dates that was not asked for; 0 if there is none
+	dates  int    // a column of dates, and one of clocks, that was not asked for; 0 if there is none
+	clocks int
+	status map[int]bool // columns that say something in most rows, and so mark no event
 }
 
 // kept is a row of the beginning of a file, by itself.
@@ -199,6 +201,7 @@ func (r *reader) layOut(head []kept) *layout {
 		at = l.headAbove(head, first)
 	}
 	l.lookForDates(head, first)
+	l.lookForStatus(head)
 	if at >= 0 && !r.oneRun(l, &head[at]) {
 		return nil
 	}
@@ -213,10 +216,34 @@ func (l *layout) lookForDates(head []kept, first int) {
 	}
 	for c := 1; c <= len(head[first].text); c++ {
 		form, isDate, _ := columnForm(head, first-1, c)
-		if c != l.time && c != l.temp && form == dateStamp && isDate {
+		switch {
+		case c == l.time || c == l.temp:
+		case form == dateStamp && isDate && l.dates == 0:
 			l.dates = c
-			return
+		case form == clockStamp && l.clocks == 0:
+			l.clocks = c
 		}
+	}
+}
+
+// lookForStatus finds the columns that hold words in most of the first rows.
+func (l *layout) lookForStatus(head []kept) {
+	words, rows := map[int]int{}, 0
+	for i := range head {
+		k := &head[i]
+		if v, _ := readNumber(k.at(l.temp).b); k.n < l.first || v.bad != fine {
+			continue
+		}
+		rows++
+		for c, t := range k.text {
+			if t != "" && readStamp([]byte(t)).form == noStamp {
+				words[c+1]++
+			}
+		}
+	}
+	l.status = map[int]bool{}
+	for c, n := range words {
+		l.status[c] = 2*n > rows
 	}
 }
 
@@ -599,6 +626,10 @@ func (r *reader) about(l *layout, head []kept, at, first int) {
 		s := scaleOf(k.word(l.temp))
 		u := timeUnit(k.word(l.time))
 		if s == nil && u == nil && patternOf(k.word(l.time)) == 0 {
+			if v, _ := readNumber(k.at(l.temp).b); v.bad == fine && k.word(l.time) != "" {
+				r.tells.tell(notTime, cell.Fault, "", k.n, l.time, k.word(l.time))
+				continue
+			}
 			r.tells.tell(aboveReading, cell.Note, "", k.n, 0, strings.Join(k.text, " "))
 			continue
 		}

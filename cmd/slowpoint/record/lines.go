@@ -36,6 +36,7 @@ type field struct {
 	shows   workbook.Display
 	shown   string // words that the number format shows behind the number
 	formula bool
+	struck  bool
 }
 
 // A row is a line of a text file or a row of a sheet.

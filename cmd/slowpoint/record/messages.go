@@ -57,6 +57,8 @@ var (
 	sheetOfText  = saying{"is given, but {1} is text and has no sheets", "clear the cell"}
 	hiddenRow    = saying{"The row is hidden", "unhide it or delete it; a hidden row is never used and never skipped in silence"}
 	hiddenColumn = saying{"Column {1} is hidden, and its values are used", "unhide it, so that everybody sees what is read"}
+	struckCell   = saying{"is struck through, or a part of it is", "take the line away if the row counts, or delete the row; what is struck through is never used and never skipped in silence"}
+	shownOther   = saying{"is stored, but the cell shows something else, by its number format or by raised digits", "look which counts, and give the cells the number format General"}
 	mergedData   = saying{"The cells {1} are merged", "unmerge them and fill each cell, or export the record again"}
 
 	// the table
@@ -71,6 +73,7 @@ var (
 	sameColumn   = saying{"is the column of times too", "name the column of temperatures"}
 	otherRun     = saying{"is column {1}, behind the times of column {2}, but Time column is column {3}", "several runs stand side by side: give the times and the temperatures of one of them, by their letters"}
 	needsDate    = saying{"holds clocks only, and column {1} holds the dates", "write both, joined by a +: {2}"}
+	needsClock   = saying{"holds dates only, and column {1} holds the clocks", "write both, joined by a +: {2}"}
 	noReadings   = saying{"{1} holds no readings{2}", "check the columns, and export the record again"}
 	twoTables    = saying{"{1} holds more than one table: {2}, and again from {3} on", "keep one of them in the file"}
 	skippedRows  = saying{"is no reading; the line is skipped", ""}

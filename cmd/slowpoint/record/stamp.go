@@ -19,6 +19,7 @@ type stamp struct {
 	timed  bool     // has a clock
 	sec    float64  // of a clock: s, two groups read as h:mm; of a number: as typed
 	groups int8     // of the clock: 2 or 3
+	short  bool     // two groups with a fraction behind: mm:ss.s
 	half   bool     // the clock says before or after noon, so it is one of day
 	zoned  bool
 	east   int32  // of a zone: s east of UTC
@@ -332,6 +333,10 @@ func (c *cursor) clock(s *stamp, first int32, width int8, sep byte) bool {
 	if sep == 'h' {
 		sep = ':'
 	}
+	if b := c.peek(); (b == '.' || b == ',') && sep == ':' && !s.dated {
+		s.short = true
+		return c.fraction(s, 60)
+	}
 	if c.peek() != sep {
 		return true
 	}
@@ -343,17 +348,20 @@ func (c *cursor) clock(s *stamp, first int32, width int8, sep byte) bool {
 	s.groups = 3
 	s.sec += float64(third)
 	if b := c.peek(); b == '.' || b == ',' || b == ':' {
-		c.i++
-		f, w := c.digits()
-		for c.peek() >= '0' && c.peek() <= '9' { // of a fraction, more than nanoseconds are dropped
-			c.i++
-		}
-		if w == 0 {
-			return false
-		}
-		s.sec += float64(f) / pow10[w]
+		return c.fraction(s, 1)
 	}
 	return true
+}
+
+// fraction reads the fraction of the last group of a clock, which stands for so many seconds.
+func (c *cursor) fraction(s *stamp, of float64) bool {
+	c.i++
+	f, w := c.digits()
+	for c.peek() >= '0' && c.peek() <= '9' { // more than nanoseconds are dropped
+		c.i++
+	}
+	s.sec += of * float64(f) / pow10[w]
+	return w > 0
 }
 
 // after reads what stands behind a clock: nothing, before or after noon, a zone.

@@ -20,6 +20,8 @@ type taker struct {
 	swap   bool      // the clocks stand before the dates
 	groups int8      // of clocks: 2 or 3
 	half   bool      // a clock says before or after noon
+	short  bool      // a clock is mm:ss with a fraction
+	timed  bool      // a date has a clock
 	zoned  bool
 	east   int32   // of the zone of the first time
 	spread bool    // zones differ
@@ -49,6 +51,8 @@ type taker struct {
 	until    int32        // line of the last reading or missing one
 	firstAt  int32        // and of the first
 	ended    bool         // another table begins
+	headsAt  []int32      // lines of the headings once more
+	below    int          // rows below the readings with a number under the temperatures
 	echo     echoes
 }
 
@@ -84,6 +88,7 @@ type pendingRow struct {
 	known  bool   // a remark, an event, the headings once more: may stand between readings
 	heads  bool   // the headings once more
 	titled bool   // words in both columns
+	number bool   // a number under the temperatures, and something under the times
 }
 
 const mostPending = 50
@@ -193,11 +198,15 @@ func (t *taker) noReading(r *row, at, temp *field) {
 		p.known = true // the units once more
 	}
 	v, _ := readNumber(temp.b)
+	p.number = v.bad == fine && len(p.time) > 0
 	p.titled = len(temp.b) > 0 && v.bad != fine && !t.r.missing(temp.b) && !p.known
 	t.wait(r, p)
 }
 
 func (t *taker) wait(r *row, p pendingRow) {
+	if p.number {
+		t.below++
+	}
 	if len(t.pending) == mostPending {
 		return
 	}
@@ -212,6 +221,9 @@ func (t *taker) resume(line int32) bool {
 	for _, p := range t.pending {
 		switch {
 		case p.known:
+			if p.heads {
+				t.headsAt = append(t.headsAt, p.line)
+			}
 			t.r.tells.tell(skippedRows, cell.Note, "", p.line, 0, p.text)
 		case p.titled:
 			w := t.r.src.word()
@@ -223,7 +235,7 @@ func (t *taker) resume(line int32) bool {
 			t.tell(notTime, p.line, t.lay.time, p.time)
 		}
 	}
-	t.pending = t.pending[:0]
+	t.pending, t.below = t.pending[:0], 0
 	return !t.ended
 }
 
@@ -255,6 +267,9 @@ func (t *taker) reading(r *row, s stamp, temp *field) {
 	if temp.formula || at.formula {
 		t.formulas.add(r.n, t.lay.temp, func() string { return "" })
 	}
+	if t.odd(r, t.lay.time) || t.odd(r, t.lay.clock) || t.odd(r, t.lay.temp) {
+		return
+	}
 	x, ok := t.value(r, temp)
 	t.echo.add(r.n, r.at(t.lay.time).b, r.at(t.lay.clock).b, temp.b)
 	if t.form == noStamp {
@@ -275,7 +290,7 @@ func (t *taker) reading(r *row, s stamp, temp *field) {
 	if s.form == numberStamp && !t.count(r, &s) {
 		return
 	}
-	t.half = t.half || s.half
+	t.half, t.short, t.timed = t.half || s.half, t.short || s.short, t.timed || s.timed
 	t.spread = t.spread || s.east != t.east
 	date := int32(-1)
 	if s.dated {
@@ -447,7 +462,7 @@ func (t *taker) noValue(r *row, f *field) {
 func (t *taker) event(r *row) bool {
 	for i := range r.fields {
 		f := &r.fields[i]
-		if c := i + 1; c == t.lay.time || c == t.lay.clock || c == t.lay.temp || f.kind != workbook.Text || t.r.missing(f.b) {
+		if c := i + 1; c == t.lay.time || c == t.lay.clock || c == t.lay.temp || t.lay.status[c] || f.kind != workbook.Text || t.r.missing(f.b) {
 			continue
 		}
 		if readStamp(f.b).form == noStamp {
@@ -472,10 +487,7 @@ func (t *taker) tells(r *row, f *field) {
 // finish tells what stands below the table, and what is missing.
 func (t *taker) finish() {
 	t.unseen()
-	if len(t.pending) > 0 {
-		p := t.pending[0]
-		t.r.tells.tell(belowTable, cell.Note, "", p.line, 0, p.text)
-	}
+	t.footer()
 	all := fmt.Sprint(t.rows)
 	of := t.r.src
 	if t.lacking.n > 0 {
@@ -490,6 +502,39 @@ func (t *taker) finish() {
 	if t.formulas.n > 0 {
 		t.r.tells.tell(formulaUsed, cell.Note, "", t.formulas.lines[0], t.formulas.col, "", fmt.Sprint(t.formulas.n), listing(of, t.formulas.lines, t.formulas.n))
 	}
+}
+
+// mostBelow is how many rows of statistics may stand below the readings: of more, or of one that has digits like a time, the times are
+// wrong.
+const mostBelow = 10
+
+// footer looks at what stands below the readings.
+func (t *taker) footer() {
+	if len(t.pending) == 0 || t.ended {
+		return
+	}
+	wrong := false
+	for _, p := range t.pending {
+		if p.number && (t.below > mostBelow || digitsIn(p.time) >= 3) {
+			t.tell(notTime, p.line, t.lay.time, p.time)
+			wrong = true
+		}
+	}
+	if wrong {
+		return
+	}
+	p := t.pending[0]
+	t.r.tells.tell(belowTable, cell.Note, "", p.line, 0, p.text)
+}
+
+func digitsIn(s string) int {
+	n := 0
+	for i := range len(s) {
+		if s[i] >= '0' && s[i] <= '9' {
+			n++
+		}
+	}
+	return n
 }
 
 func degreesC(x float64) string { return strings.Replace(fmt.Sprintf("%g °C", x), "-", "−", 1) }
