@@ -2,7 +2,6 @@ package record
 
 import (
 	"bytes"
-	"encoding/csv"
 	"flag"
 	"fmt"
 	"math"
@@ -218,12 +217,7 @@ func buildBook(t *testing.T, body string) []byte {
 			must(f.SetWorkbookProps(&excelize.WorkbookPropsOptions{Date1904: &yes}))
 		default:
 			n++
-			cells, err := csv.NewReader(strings.NewReader(strings.ReplaceAll(line, "|", ","))).Read()
-			if line == "" {
-				continue
-			}
-			must(err)
-			for i, v := range cells {
+			for i, v := range strings.Split(line, "|") {
 				name, err := excelize.CoordinatesToCellName(i+1, n)
 				must(err)
 				fillCell(t, f, sheet, name, strings.TrimSpace(v))
@@ -242,6 +236,14 @@ func fillCell(t *testing.T, f *excelize.File, sheet, name, v string) {
 	m := withFormat.FindStringSubmatch(v)
 	switch {
 	case v == "":
+	case strings.HasPrefix(v, "~"): // struck through
+		x, _ = strconv.ParseFloat(v[1:], 64)
+		if err = f.SetCellValue(sheet, name, x); err == nil {
+			var style int
+			if style, err = f.NewStyle(&excelize.Style{Font: &excelize.Font{Strike: true}}); err == nil {
+				err = f.SetCellStyle(sheet, name, name, style)
+			}
+		}
 	case m != nil:
 		x, _ = strconv.ParseFloat(m[1], 64)
 		if err = f.SetCellValue(sheet, name, x); err == nil {

@@ -2,8 +2,8 @@ package record
 
 import (
 	"fmt"
+	"math"
 	"math/bits"
-	"strings"
 	"time"
 )
 
@@ -35,11 +35,7 @@ func (t *taker) date(r *row, s *stamp) int32 {
 	if !known {
 		i = int32(len(t.seen))
 		t.byDate[k] = i
-		col := t.lay.time
-		if t.swap {
-			col = t.lay.clock
-		}
-		t.seen = append(t.seen, dated{key: k, fits: k.fits(), line: r.n, text: inUTF8(r.at(col).b)})
+		t.seen = append(t.seen, dated{key: k, fits: k.fits(), line: r.n, text: inUTF8(r.at(t.dateCol()).b)})
 	}
 	t.last, t.lastAt = k, i
 	return i
@@ -92,9 +88,14 @@ func (k dateKey) day(o order) int64 {
 // order decides the order of the dates: the one that the setting or the heading says, or the only one that every date fits. Where several
 // are left that give other days, the setting is asked for.
 func (t *taker) order() (order, bool) {
-	all := anyOrder
+	all, sound := anyOrder, true
 	for i := range t.seen {
-		all &= t.seen[i].fits
+		if d := &t.seen[i]; d.fits == 0 {
+			t.tell(notTime, d.line, t.dateCol(), d.text)
+			sound = false
+		} else {
+			all &= d.fits
+		}
 	}
 	said := t.lay.order
 	if t.r.set.DateOrder != "" {
@@ -102,9 +103,11 @@ func (t *taker) order() (order, bool) {
 	}
 	switch {
 	case said != 0:
-		return said, t.fitsAll(said)
+		return said, t.fitsAll(said) && sound
 	case all == 0:
 		t.noOrder()
+		return 0, false
+	case !sound:
 		return 0, false
 	case bits.OnesCount8(uint8(all)) == 1:
 		return all, true
@@ -154,36 +157,33 @@ func (t *taker) fitsAll(said order) bool {
 	ok := true
 	for i := range t.seen {
 		d := &t.seen[i]
-		if d.fits&said == 0 && d.key.order == 0 && d.key.width[0] != 4 {
+		if d.fits != 0 && d.fits&said == 0 && d.key.order == 0 && d.key.width[0] != 4 {
 			t.tell(wrongOrder, d.line, t.dateCol(), d.text, said.String())
-			ok = false
-		} else if d.fits == 0 {
-			t.tell(notTime, d.line, t.dateCol(), d.text)
 			ok = false
 		}
 	}
 	return ok
 }
 
-// noOrder tells which dates keep each order from fitting.
+// noOrder tells which dates keep each order from fitting that others have.
 func (t *taker) noOrder() {
 	var why []string
-	first := -1
+	some := order(0)
+	for i := range t.seen {
+		some |= t.seen[i].fits
+	}
+	first := int32(math.MaxInt32)
+	var d *dated
 	for _, o := range orders {
 		for i := range t.seen {
-			if d := &t.seen[i]; d.fits&o.order == 0 {
-				if d.fits == 0 {
-					t.tell(notTime, d.line, t.dateCol(), d.text)
-					return
-				}
-				why = append(why, fmt.Sprintf("%s in %s is not %s", quote(d.text), t.r.row(d.line), o.word))
-				if first < 0 || d.line < t.seen[first].line {
-					first = i
+			if other := &t.seen[i]; some&o.order != 0 && other.fits != 0 && other.fits&o.order == 0 {
+				why = append(why, fmt.Sprintf("%s in %s is not %s", quote(other.text), t.r.row(other.line), o.word))
+				if other.line < first {
+					first, d = other.line, other
 				}
 				break
 			}
 		}
 	}
-	d := &t.seen[first]
-	t.tell(noOrder, d.line, t.dateCol(), d.text, strings.Join(why, ", "))
+	t.tell(noOrder, d.line, t.dateCol(), d.text, joined(why, ", and "))
 }

@@ -28,7 +28,9 @@ type layout struct {
 	scale  *scale // unit of the temperatures; nil if it is not stated
 	order  order  // of dates, where a heading shows it
 	zone   string // of the clocks, as a heading shows it
-	notes  map[int32]bool
+	dates  int    // a column of dates, and one of clocks, that was not asked for; 0 if there is none
+	clocks int
+	status map[int]bool // columns that say something in most rows, and so mark no event
 }
 
 // kept is a row of the beginning of a file, by itself.
@@ -49,6 +51,16 @@ func keep(r *row) kept {
 	return k
 }
 
+// foreign tells whether a row is not in UTF-8.
+func foreign(r *row) bool {
+	for i := range r.fields {
+		if !utf8.Valid(r.fields[i].b) {
+			return true
+		}
+	}
+	return false
+}
+
 // word gives the text of a column, from 1.
 func (k *kept) word(col int) string {
 	if col < 1 || col > len(k.text) {
@@ -60,7 +72,12 @@ func (k *kept) word(col int) string {
 // beginning reads the first rows.
 func (r *reader) beginning() ([]kept, error) {
 	var head []kept
+	told := false
 	err := r.src.each(func(row *row) error {
+		if _, isText := r.src.(*text); isText && !told && foreign(row) {
+			r.tells.tell(notUTF8, cell.Note, "", row.n, 0, "")
+			told = true
+		}
 		if head = append(head, keep(row)); len(head) == headRows {
 			return errStop
 		}
@@ -91,27 +108,32 @@ func wanted(setting, typed string) want {
 	return w
 }
 
-// fits gives the columns of a row whose headings are what is wanted: those that are the same words, else those that are without units.
+// fits gives the columns of a row whose headings are what is wanted: those that are the same words, else those that are without units;
+// capital letters count where they tell columns apart.
 func (w want) fits(k *kept) []int {
 	if w.sure {
 		return nil
 	}
-	var same, named []int
+	var alike [4][]int
 	for i, t := range k.text {
 		if t == "" {
 			continue
 		}
-		switch title := titleOf(t); {
-		case workbook.Key(t) == workbook.Key(w.raw):
-			same = append(same, i+1)
-		case workbook.Key(title.name) == workbook.Key(w.name), workbook.Key(t) == workbook.Key(w.name):
-			named = append(named, i+1)
+		title := titleOf(t)
+		for how, same := range []bool{t == w.raw, workbook.Key(t) == workbook.Key(w.raw), title.name == w.name || t == w.name,
+			workbook.Key(title.name) == workbook.Key(w.name) || workbook.Key(t) == workbook.Key(w.name)} {
+			if same {
+				alike[how] = append(alike[how], i+1)
+				break
+			}
 		}
 	}
-	if len(same) > 0 {
-		return same
+	for _, cols := range alike {
+		if len(cols) > 0 {
+			return cols
+		}
 	}
-	return named
+	return nil
 }
 
 // wants are the columns that the settings name: that of times, or of dates and of clocks, and that of temperatures.
@@ -150,7 +172,7 @@ func (r *reader) layOut(head []kept) *layout {
 		r.unknownHeading(head, all)
 		return nil
 	}
-	l := &layout{notes: map[int32]bool{}}
+	l := &layout{}
 	if at < 0 && (len(times) == 0 || temp.typed == "") {
 		if at = guessHeadings(head); at < 0 {
 			r.problems.Add(noHeadings.problem(r.set.Cells[setTime], cell.Fault, setTime, "", r.src.holder()))
@@ -178,8 +200,81 @@ func (r *reader) layOut(head []kept) *layout {
 	if at < 0 {
 		at = l.headAbove(head, first)
 	}
+	l.lookForDates(head, first)
+	l.lookForStatus(head)
+	if at >= 0 && !r.oneRun(l, &head[at]) {
+		return nil
+	}
 	r.about(l, head, at, first)
 	return l
+}
+
+// lookForDates finds a column of dates beside one of clocks.
+func (l *layout) lookForDates(head []kept, first int) {
+	if l.clock > 0 {
+		return
+	}
+	for c := 1; c <= len(head[first].text); c++ {
+		form, isDate, _ := columnForm(head, first-1, c)
+		switch {
+		case c == l.time || c == l.temp:
+		case form == dateStamp && isDate && l.dates == 0:
+			l.dates = c
+		case form == clockStamp && l.clocks == 0:
+			l.clocks = c
+		}
+	}
+}
+
+// lookForStatus finds the columns that hold words in most of the first rows.
+func (l *layout) lookForStatus(head []kept) {
+	words, rows := map[int]int{}, 0
+	for i := range head {
+		k := &head[i]
+		if v, _ := readNumber(k.at(l.temp).b); k.n < l.first || v.bad != fine {
+			continue
+		}
+		rows++
+		for c, t := range k.text {
+			if t != "" && readStamp([]byte(t)).form == noStamp {
+				words[c+1]++
+			}
+		}
+	}
+	l.status = map[int]bool{}
+	for c, n := range words {
+		l.status[c] = 2*n > rows
+	}
+}
+
+// oneRun holds the temperatures to the times of their own run, where several stand side by side under headings that differ by a number at
+// most.
+func (r *reader) oneRun(l *layout, names *kept) bool {
+	of := runName(names.word(l.time))
+	nearest, between := 0, 0
+	for c := l.time + 1; c < l.temp; c++ {
+		switch name := runName(names.word(c)); {
+		case name == of && between > 0:
+			nearest = c
+		case name != "" && name != of && c != l.clock:
+			between++
+		}
+	}
+	if of == "" || nearest == 0 {
+		return true
+	}
+	r.problems.Add(otherRun.problem(r.set.Cells[setTemp], cell.Fault, setTemp, r.set.Temperature, cell.ColumnName(l.temp), cell.ColumnName(nearest), cell.ColumnName(l.time)))
+	return false
+}
+
+// runName is a heading without its unit and without numbers.
+func runName(heading string) string {
+	return workbook.Key(strings.Map(func(c rune) rune {
+		if c >= '0' && c <= '9' || c == '#' || c == '.' || c == '_' {
+			return -1
+		}
+		return c
+	}, titleOf(heading).name))
 }
 
 func (r *reader) underHeadings(l *layout) string {
@@ -264,19 +359,29 @@ func (r *reader) named(k *kept, cols []int) string {
 
 func quote(s string) string { return fmt.Sprintf("%q", shorten(s)) }
 
-// guessHeadings finds a row of names with a row of a time and a number below; -1 if there is none.
+// guessHeadings finds the last row of names above the first row of a time and a number; -1 if there is none.
 func guessHeadings(head []kept) int {
-	for i := range head {
-		if !wordy(&head[i]) {
+	for j := range head {
+		if times, numbers := filled(&head[j]); times == 0 || times+numbers < 2 {
 			continue
 		}
-		for j := i + 1; j < len(head) && j <= i+3; j++ {
-			if times, numbers := filled(&head[j]); times+numbers >= 2 && times >= 1 {
+		for i := j - 1; i >= 0 && i >= j-3; i-- {
+			if wordy(&head[i]) && !onlyUnits(&head[i]) {
 				return i
 			}
 		}
 	}
 	return -1
+}
+
+// onlyUnits tells whether a row holds nothing but units.
+func onlyUnits(k *kept) bool {
+	for _, t := range k.text {
+		if t != "" && !isUnit(t) && t != "%" {
+			return false
+		}
+	}
+	return true
 }
 
 // wordy tells whether a row may be headings: two words at least and no numbers.
@@ -457,8 +562,7 @@ func offsetOf(word string) (int32, error) {
 	return s.east, nil
 }
 
-// firstReading finds the first row from from on that has a time and, under the temperatures, a number or a word for none; units between are
-// taken.
+// firstReading finds the first row from from on that has a time; where there are no headings above, with a number under the temperatures.
 func (l *layout) firstReading(head []kept, from int) int {
 	for i := from; i < len(head); i++ {
 		if i > from+headBlock && l.heads > 0 {
@@ -468,8 +572,7 @@ func (l *layout) firstReading(head []kept, from int) int {
 		if !l.timed(k) {
 			continue
 		}
-		v, _ := readNumber(k.at(l.temp).b)
-		if v.bad == fine || k.at(l.temp).kind != workbook.Text || missingWord(k.at(l.temp).b) {
+		if v, _ := readNumber(k.at(l.temp).b); v.bad == fine || l.heads > 0 {
 			return i
 		}
 	}
@@ -523,6 +626,10 @@ func (r *reader) about(l *layout, head []kept, at, first int) {
 		s := scaleOf(k.word(l.temp))
 		u := timeUnit(k.word(l.time))
 		if s == nil && u == nil && patternOf(k.word(l.time)) == 0 {
+			if v, _ := readNumber(k.at(l.temp).b); v.bad == fine && k.word(l.time) != "" {
+				r.tells.tell(notTime, cell.Fault, "", k.n, l.time, k.word(l.time))
+				continue
+			}
 			r.tells.tell(aboveReading, cell.Note, "", k.n, 0, strings.Join(k.text, " "))
 			continue
 		}

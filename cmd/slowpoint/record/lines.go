@@ -34,7 +34,9 @@ type field struct {
 	kind    workbook.Kind // of text files always Text, or Blank
 	form    workbook.Form
 	shows   workbook.Display
+	shown   string // words that the number format shows behind the number
 	formula bool
+	struck  bool
 }
 
 // A row is a line of a text file or a row of a sheet.
@@ -71,12 +73,12 @@ func (r *row) last() int {
 
 // lineReader gives the lines of a text without holding it.
 type lineReader struct {
-	r          io.Reader
-	buf        []byte
-	from, to   int
-	ended      bool
-	eol        byte
-	unfinished error
+	r        io.Reader
+	buf      []byte
+	from, to int
+	ended    bool
+	eol      byte
+	zeros    bool // long runs of zero bytes were passed over
 }
 
 func newLineReader(r io.Reader, eol byte) *lineReader {
@@ -90,6 +92,12 @@ func (l *lineReader) next() ([]byte, error) {
 		if i := bytes.IndexByte(l.buf[l.from+seen:l.to], l.eol); i >= 0 {
 			line := l.buf[l.from : l.from+seen+i]
 			l.from += seen + i + 1
+			if len(line) > mostLine {
+				if line = bytes.TrimLeft(line, "\x00"); len(line) > mostLine {
+					return nil, errLong
+				}
+				l.zeros = true
+			}
 			return line, nil
 		}
 		seen = l.to - l.from
@@ -102,7 +110,11 @@ func (l *lineReader) next() ([]byte, error) {
 			return line, nil
 		}
 		if seen > mostLine {
-			return nil, errLong
+			if len(bytes.Trim(l.buf[l.from:l.to], "\x00")) > 0 {
+				return nil, errLong
+			}
+			l.zeros = true // a file of which only the size was written
+			l.from, l.to, seen = 0, 0, 0
 		}
 		if l.from > 0 {
 			copy(l.buf, l.buf[l.from:l.to])

@@ -29,6 +29,7 @@ const (
 	setZone    = "Time zone"
 	setMissing = "Missing words"
 	setDecimal = "Decimal sign"
+	setStart   = "Starts at"
 )
 
 // Every wording of the reader.
@@ -40,14 +41,25 @@ var (
 	emptyFile = saying{"is empty", "export the record again"}
 	tooBig    = saying{"has more than {1} MB, the most that is read", "export a part of the record, or with a longer interval"}
 	tooMany   = saying{"has more than {1} rows, the most that is read", "export a part of the record, or with a longer interval"}
-	notText   = saying{"is {1}, and no text and no .xlsx workbook", "export the record as CSV or .xlsx"}
+	notText   = saying{"is {1}, and neither delimited text in a known writing nor an .xlsx workbook", "export the record as CSV or .xlsx"}
 	badBook   = saying{"cannot be read: {1}", ""}
 	zeroBytes = saying{"The line holds zero bytes, so a part of the record is lost or it is UTF-16 without a mark", "export the record again, as CSV UTF-8"}
 	zeroEnd   = saying{"The file ends in zero bytes, which are ignored", ""}
 	longLine  = saying{"has a line of more than 1 MB", "export the record again, one reading a line"}
-	notUTF8   = saying{"The file is not in UTF-8 and is read as Windows-1252", ""}
+	notUTF8   = saying{"The line is not in UTF-8; such lines are read as Windows-1252", ""}
 	badQuote  = saying{"A quotation mark stands in the wrong place", "take out the stray quotation mark, or export the record again"}
 	wideRow   = saying{"The line has {1} cells, but the headings are {2}", "a sign that divides the cells may stand in a cell, such as a decimal comma: export the record with semicolons or tabs between the cells"}
+
+	sheetHidden  = saying{"is a hidden sheet of {1}", "unhide it, so that everybody sees what is read"}
+	noSheet      = saying{"is no sheet of {1}; there are {2}", "correct the name"}
+	askSheet     = saying{"{1} has several sheets: {2}", "name one of them in Sheet"}
+	hiddenSheets = saying{"{1} has hidden sheets, {2}, which are ignored; {3} is read", ""}
+	sheetOfText  = saying{"is given, but {1} is text and has no sheets", "clear the cell"}
+	hiddenRow    = saying{"The row is hidden", "unhide it or delete it; a hidden row is never used and never skipped in silence"}
+	hiddenColumn = saying{"Column {1} is hidden, and its values are used", "unhide it, so that everybody sees what is read"}
+	struckCell   = saying{"is struck through, or a part of it is", "take the line away if the row counts, or delete the row; what is struck through is never used and never skipped in silence"}
+	shownOther   = saying{"is stored, but the cell shows something else, by its number format or by raised digits", "look which counts, and give the cells the number format General"}
+	mergedData   = saying{"The cells {1} are merged", "unmerge them and fill each cell, or export the record again"}
 
 	// the table
 	noHeading    = saying{"is no heading of {1}{2}", "correct it, or give the letter of the column"}
@@ -57,13 +69,14 @@ var (
 	severalCols  = saying{"fits several columns: {1}", "give the letter of the one that is meant"}
 	askColumn    = saying{"Several columns could be meant: {1}", "name one of them in {2}"}
 	letterTwice  = saying{"is the heading of column {1} and the letter of column {2}", "write column {1} or column {2}"}
-	noColumn     = saying{"is a column beyond the last one, {1}", "correct the letter"}
+	noColumn     = saying{"is no heading with readings below that could be found, and as a letter it is beyond the last column, {1}", "correct it"}
 	sameColumn   = saying{"is the column of times too", "name the column of temperatures"}
-	otherRun     = saying{"stands behind the times of column {1} ({2}), and not behind those of column {3} ({4})", "give the times and the temperatures of one run, by their letters"}
-	needsDate    = saying{"holds clocks only, but column {1} ({2}) holds dates", "write both, joined by a +: {3}"}
+	otherRun     = saying{"is column {1}, behind the times of column {2}, but Time column is column {3}", "several runs stand side by side: give the times and the temperatures of one of them, by their letters"}
+	needsDate    = saying{"holds clocks only, and column {1} holds the dates", "write both, joined by a +: {2}"}
+	needsClock   = saying{"holds dates only, and column {1} holds the clocks", "write both, joined by a +: {2}"}
 	noReadings   = saying{"{1} holds no readings{2}", "check the columns, and export the record again"}
 	twoTables    = saying{"{1} holds more than one table: {2}, and again from {3} on", "keep one of them in the file"}
-	skippedRows  = saying{"The line is no reading and is skipped", ""}
+	skippedRows  = saying{"is no reading; the line is skipped", ""}
 	eventRows    = saying{"The line marks an event and has no reading; it is skipped", ""}
 	belowTable   = saying{"stands below the readings; it and what follows are not read", ""}
 	aboveReading = saying{"stands between the headings and the readings and is not read", ""}
@@ -88,7 +101,8 @@ var (
 	noOrderWord  = saying{"is no order of dates", "choose from: day month year, month day year, year month day"}
 	badZone      = saying{"is no offset from UTC", "write it as UTC-07:00"}
 	otherZone    = saying{"says {1}, but the file says {2}", "find out which counts; blank takes that of the file"}
-	someZones    = saying{"has no zone, but other times have one", "export the record again"}
+	zoneLost     = saying{"has no zone, but the times above have one", "export the record again with times of one form"}
+	zoneCame     = saying{"has a zone, but the times above have none", "export the record again with times of one form"}
 	backHour     = saying{"is an hour or so before the time of {1}, {2}: the clock of the logger was set back, so an hour is there twice", "export the record in UTC, or keep the readings up to here or from here on"}
 	back         = saying{"is before the time of {1}, {2}", "export the record again, sorted by time"}
 	sameTime     = saying{"is the time of {1} too, with another reading ({2} and {3})", "take one of the two out, or, where several sensors are listed below each other, export them in columns of their own"}
@@ -109,16 +123,17 @@ var (
 	askComma    = saying{"{2} in {3} can be {4} or {5}, for its comma may divide thousands, and nothing else in {1} shows the decimal sign", "fill the item Decimal sign of the sheet Plan"}
 	badDecimal  = saying{"is no decimal sign", "choose from: point, comma"}
 	isMissing   = saying{"is not a temperature and is taken as missing: {1} of {2} readings ({3})", ""}
-	blankRead   = saying{"{1} of {2} readings are missing ({3})", ""}
+	blankRead   = saying{"{1} of {2} readings missing ({3})", ""}
 	noStored    = saying{"The formula has no stored result", "open the workbook in your spreadsheet program, let it calculate, and save it again"}
 	wrongForm   = saying{"is formatted as a date, a time or a percentage, and is no temperature", "check the column, and give its cells a number format"}
 	formulaUsed = saying{"{1} of the cells hold formulas; their stored results are used ({2})", ""}
 	outside     = saying{"is beyond what is read as a temperature of food or its surroundings, {1} to {2}, and is taken as missing: {3} of {4} readings ({5})", ""}
 	constant    = saying{"is every one of the {1} readings: the sensor does not follow", "choose another channel, or another record"}
-	frozen      = saying{"is the reading of {1} times in a row, from {2} to {3}: the sensor may have stopped", "check the logger"}
-	doubtful    = saying{"jumps away from the readings before and after it, {1} and {2}, and is kept{3}", "look at the record there; limits that it decides cannot be told"}
+	frozen      = saying{"is read {1} times in a row, up to {2}: the sensor may have stopped", "check the logger"}
+	doubtful    = saying{"jumps away from {1} before and {2} after it, and is kept", "look at the record there: a loose plug or a moved probe?"}
 	gap         = saying{"No reading between {1} and {2}: {3}, where {4} is usual", ""}
 	springGap   = saying{"No reading between {1} and {2}: {3}, where {4} is usual; clocks are set forward by an hour in such nights, which would be no gap", "if the clock of the logger was, export the record in UTC"}
+	changeNight = saying{"The record runs over the night before {1}, in which clocks change in many countries, and no Time zone is given; no step of an hour is seen", ""}
 	cut         = saying{"{1} of {2} readings are left out, as the setting says: only those from {3} to {4} after the first count", ""}
 	nothingLeft = saying{"No reading lies between {1} and {2} after the first", "check from when to when readings are taken"}
 )

@@ -64,8 +64,11 @@ type Echo struct {
 
 // Read reads one channel of a logger's file. The problems hold everything that is wrong, in the order of their places; with a Fault among
 // them there is no log.
-func Read(set Setting) (*Log, cell.Errors) {
-	r := &reader{set: set, log: &Log{Name: set.Name}}
+func Read(set Setting) (*Log, cell.Errors) { return read(set, mostRows) }
+
+// read takes no more rows than most.
+func read(set Setting, most int) (*Log, cell.Errors) {
+	r := &reader{set: set, most: most, log: &Log{Name: set.Name}}
 	if r.settings() && r.file() {
 		r.table()
 	}
@@ -81,6 +84,7 @@ func Read(set Setting) (*Log, cell.Errors) {
 type reader struct {
 	set      Setting
 	log      *Log
+	most     int // rows
 	src      source
 	problems cell.Errors     // of the settings and the file as a whole
 	tells    tellings        // of its lines
@@ -150,6 +154,9 @@ func (r *reader) table() {
 		return
 	}
 	t.finish()
+	if f, isText := r.src.(*text); isText && f.zeros {
+		r.tells.tell(zeroEnd, cell.Note, "", f.lines, 0, "")
+	}
 	r.make(t)
 }
 
@@ -160,7 +167,7 @@ func (r *reader) broken(err error) {
 	case errLong:
 		r.problems.Add(longLine.problem(at, cell.Fault, setFile, r.set.Name))
 	case errMany:
-		r.problems.Add(tooMany.problem(at, cell.Fault, setFile, r.set.Name, fmt.Sprint(mostRows)))
+		r.problems.Add(tooMany.problem(at, cell.Fault, setFile, r.set.Name, fmt.Sprint(r.most)))
 	default:
 		r.problems.Add(noFile.problem(at, cell.Fault, setFile, r.set.Name, reason(err)))
 	}
@@ -255,9 +262,9 @@ func (t *taker) between() {
 		end = spanOf(to)
 	}
 	if a == b {
-		t.r.problems.Add(nothingLeft.problem(set.Cells[setFile], cell.Fault, setFile, "", spanOf(from), end))
+		t.r.problems.Add(nothingLeft.problem(set.Cells[setStart], cell.Fault, setStart, "", spanOf(from), end))
 	} else if b-a < all {
-		t.r.problems.Add(cut.problem(set.Cells[setFile], cell.Note, setFile, "", fmt.Sprint(all-(b-a)), fmt.Sprint(all), spanOf(from), end))
+		t.r.problems.Add(cut.problem(set.Cells[setStart], cell.Note, setStart, "", fmt.Sprint(all-(b-a)), fmt.Sprint(all), spanOf(from), end))
 	}
 }
 

@@ -64,6 +64,7 @@ func (t *text) each(take func(*row) error) error {
 	for {
 		line, err := l.next()
 		if err == io.EOF {
+			t.zeros = t.zeros || l.zeros
 			return nil
 		}
 		if err != nil {
@@ -74,11 +75,13 @@ func (t *text) each(take func(*row) error) error {
 			line = bytes.TrimPrefix(line, []byte("\xef\xbb\xbf"))
 		}
 		r = row{n: t.lines}
+		r.zeros, l.zeros = l.zeros, false
 		if bytes.IndexByte(line, 0) >= 0 {
-			if line = bytes.TrimRight(line, "\x00"); l.ended && l.from == l.to {
+			atEnd := l.ended && l.from == l.to
+			if line = bytes.TrimRight(line, "\x00"); atEnd {
 				t.zeros = true
 			}
-			r.zeros = !t.zeros || bytes.IndexByte(line, 0) >= 0
+			r.zeros = !atEnd || bytes.IndexByte(line, 0) >= 0
 		}
 		open := false
 		if r.fields, open, r.quotes = d.divide(line); open {
@@ -141,7 +144,11 @@ func divides(head []byte, eol byte) byte {
 	best, most := byte(','), 0
 	for _, s := range signs {
 		n := even(lines, s)
-		if n > 0 && 10*n > 16*most { // a later sign must be much better
+		better := 10*n > 16*most // a later sign must be much better
+		if s == ' ' {
+			better = n > 4*most
+		}
+		if n > 0 && better {
 			best, most = s, n
 		}
 	}
@@ -201,6 +208,12 @@ func (r *reader) open() (source, bool) {
 	if strings.TrimSpace(strings.Trim(string(head), "\x00\ufeff")) == "" && len(head) < headBytes {
 		return refuse(emptyFile)
 	}
+	if r.set.Sheet != "" {
+		r.problems.Add(sheetOfText.problem(r.set.Cells[setSheet], cell.Warning, setSheet, r.set.Sheet, r.set.Name))
+	}
+	if what := binary(head); what != "" {
+		return refuse(notText, what)
+	}
 	return openText(r.set.File, r.set.Name, head), true
 }
 
@@ -227,6 +240,27 @@ func otherKind(head []byte) string {
 		if bytes.HasPrefix(head, []byte(k.start)) {
 			return k.is
 		}
+	}
+	return ""
+}
+
+// binary names what is no text: of many zero bytes, or of other signs that no text has; "" if it is text.
+func binary(head []byte) string {
+	if bytes.HasPrefix(head, []byte("\xff\xfe")) || bytes.HasPrefix(head, []byte("\xfe\xff")) {
+		return ""
+	}
+	head = bytes.TrimRight(head, "\x00")
+	zeros, odd := bytes.Count(head, []byte{0}), 0
+	for _, b := range head {
+		if b < ' ' && b != 0 && b != '\t' && b != '\n' && b != '\r' {
+			odd++
+		}
+	}
+	switch {
+	case 4*zeros > len(head) && 20*odd < len(head):
+		return "UTF-16 without a mark"
+	case 10*(zeros+odd) > len(head):
+		return "a file of the logger's own program"
 	}
 	return ""
 }

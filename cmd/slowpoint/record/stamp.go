@@ -1,6 +1,7 @@
 package record
 
 import (
+	"bytes"
 	"strings"
 	"unicode"
 	"unicode/utf8"
@@ -18,6 +19,7 @@ type stamp struct {
 	timed  bool     // has a clock
 	sec    float64  // of a clock: s, two groups read as h:mm; of a number: as typed
 	groups int8     // of the clock: 2 or 3
+	short  bool     // two groups with a fraction behind: mm:ss.s
 	half   bool     // the clock says before or after noon, so it is one of day
 	zoned  bool
 	east   int32  // of a zone: s east of UTC
@@ -135,10 +137,17 @@ func readStamp(b []byte) stamp {
 
 // started reads a stamp that starts with a digit, but is no plain number.
 func (c *cursor) started() (s stamp, ok bool) {
+	if c.compact(&s) {
+		return s, true
+	}
 	n, width := c.digits()
 	switch sep := c.peek(); {
 	case sep == ':':
 		return s, c.clock(&s, n, width, ':') && c.after(&s)
+	case sep == '.' && c.i+2 < len(c.b) && (c.b[c.i+1] >= 'A' || c.b[c.i+1] == ' ' && c.b[c.i+2] >= 'A'): // 11. Februar 2016
+		c.i++
+		c.blanks()
+		return s, c.dayMonth(&s, n, width) && c.dayTime(&s)
 	case sep == '/' || sep == '-' || sep == '.':
 		return s, c.date(&s, n, width, sep) && c.dayTime(&s)
 	case width >= 1 && width <= 2 && (sep == ' ' || sep >= 'A'):
@@ -146,6 +155,50 @@ func (c *cursor) started() (s stamp, ok bool) {
 		return s, c.dayMonth(&s, n, width) && c.dayTime(&s)
 	}
 	return s, false
+}
+
+// compact reads a date without signs between its parts, with a clock behind: 20260211140557, 20260211T140557Z.
+func (c *cursor) compact(s *stamp) bool {
+	run := 0
+	for run < len(c.b) && c.b[run] >= '0' && c.b[run] <= '9' {
+		run++
+	}
+	if run != 14 && (run != 8 || len(c.b) < 13 || !strings.ContainsRune("Tt_ ", rune(c.b[8])) || c.b[9] < '0' || c.b[9] > '9') {
+		return false
+	}
+	clock := c.b[8:]
+	if run == 8 {
+		clock = c.b[9:]
+	}
+	if bytes.IndexByte(clock, ':') >= 0 {
+		if !s.plainDate(c.b[:8]) {
+			return false
+		}
+		c.i = 8
+		return c.dayTime(s)
+	}
+	k := cursor{b: clock}
+	n, w := k.digits()
+	if w != 6 || n/10000 > 24 || n/100%100 > 59 || n%100 > 60 || !s.plainDate(c.b[:8]) {
+		return false
+	}
+	s.form, s.dated, s.timed, s.groups = dateStamp, true, true, 3
+	s.sec = float64(n/10000*3600 + n/100%100*60 + n%100)
+	c.b, c.i = clock, k.i
+	return c.after(s)
+}
+
+// plainDate reads eight digits as year, month and day.
+func (s *stamp) plainDate(b []byte) bool {
+	n := int32(0)
+	for _, d := range b {
+		if d < '0' || d > '9' {
+			return false
+		}
+		n = 10*n + int32(d-'0')
+	}
+	s.date, s.width, s.order = [3]int32{n / 10000, n / 100 % 100, n % 100}, [3]int8{4, 2, 2}, yearFirst
+	return len(b) == 8
 }
 
 // worded reads a stamp that starts with a word: a day of the week, a month, before or after noon.
@@ -280,6 +333,10 @@ func (c *cursor) clock(s *stamp, first int32, width int8, sep byte) bool {
 	if sep == 'h' {
 		sep = ':'
 	}
+	if b := c.peek(); (b == '.' || b == ',') && sep == ':' && !s.dated {
+		s.short = true
+		return c.fraction(s, 60)
+	}
 	if c.peek() != sep {
 		return true
 	}
@@ -291,17 +348,20 @@ func (c *cursor) clock(s *stamp, first int32, width int8, sep byte) bool {
 	s.groups = 3
 	s.sec += float64(third)
 	if b := c.peek(); b == '.' || b == ',' || b == ':' {
-		c.i++
-		f, w := c.digits()
-		for c.peek() >= '0' && c.peek() <= '9' { // of a fraction, more than nanoseconds are dropped
-			c.i++
-		}
-		if w == 0 {
-			return false
-		}
-		s.sec += float64(f) / pow10[w]
+		return c.fraction(s, 1)
 	}
 	return true
+}
+
+// fraction reads the fraction of the last group of a clock, which stands for so many seconds.
+func (c *cursor) fraction(s *stamp, of float64) bool {
+	c.i++
+	f, w := c.digits()
+	for c.peek() >= '0' && c.peek() <= '9' { // more than nanoseconds are dropped
+		c.i++
+	}
+	s.sec += of * float64(f) / pow10[w]
+	return w > 0
 }
 
 // after reads what stands behind a clock: nothing, before or after noon, a zone.

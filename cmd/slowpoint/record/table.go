@@ -3,6 +3,7 @@ package record
 import (
 	"bytes"
 	"fmt"
+	"strconv"
 	"strings"
 
 	"slowpoint/cmd/slowpoint/workbook"
@@ -19,10 +20,12 @@ type taker struct {
 	swap   bool      // the clocks stand before the dates
 	groups int8      // of clocks: 2 or 3
 	half   bool      // a clock says before or after noon
+	short  bool      // a clock is mm:ss with a fraction
+	timed  bool      // a date has a clock
 	zoned  bool
-	east   int32 // of the zone of the first time
-	spread bool  // zones differ
-	most   float64
+	east   int32   // of the zone of the first time
+	spread bool    // zones differ
+	most   float64 // of the times
 
 	secs, cs     []float64 // of each reading: s of its day or as typed; its temperature as typed
 	lines, dates []int32   // its line; its date in seen, -1 if it has none
@@ -42,13 +45,14 @@ type taker struct {
 	lacking  tally // missing words
 	blanks   tally // blank readings
 	beyond   tally // outside of what is possible
-	sentinel map[float64]int
 	formulas tally
 	events   int
 	pending  []pendingRow // rows that are no readings, since the last reading
-	dropped  int          // more of them
 	until    int32        // line of the last reading or missing one
-	firstAt  int32
+	firstAt  int32        // and of the first
+	ended    bool         // another table begins
+	headsAt  []int32      // lines of the headings once more
+	below    int          // rows below the readings with a number under the temperatures
 	echo     echoes
 }
 
@@ -84,27 +88,30 @@ type pendingRow struct {
 	known  bool   // a remark, an event, the headings once more: may stand between readings
 	heads  bool   // the headings once more
 	titled bool   // words in both columns
+	number bool   // a number under the temperatures, and something under the times
 }
 
 const mostPending = 50
 
 // take reads one row.
 func (t *taker) take(r *row) error {
-	if r.n < t.lay.first {
+	if r.n < t.lay.first || t.ended {
 		return nil
 	}
-	if t.rows > mostRows {
-		return errMany
+	if r.zeros {
+		t.tell(zeroBytes, r.n, 0, "")
+		return nil
 	}
 	if r.blank() {
-		if r.zeros {
-			t.tell(zeroBytes, r.n, 0, "")
-		}
 		return nil
 	}
 	last := r.last()
 	at, temp := r.at(t.lay.time), r.at(t.lay.temp)
-	if len(at.b) == 0 && at.kind != workbook.NoStored {
+	if at.kind == workbook.NoStored {
+		t.tell(noStored, r.n, t.lay.time, "")
+		return nil
+	}
+	if len(at.b) == 0 {
 		t.timeless(r, temp)
 		return nil
 	}
@@ -113,14 +120,17 @@ func (t *taker) take(r *row) error {
 		t.noReading(r, at, temp)
 		return nil
 	}
-	if len(t.pending) > 0 {
-		t.resume(r.n)
+	if len(t.pending) > 0 && !t.resume(r.n) {
+		return nil
+	}
+	if t.rows == t.r.most {
+		return errMany
 	}
 	t.rows++
 	t.until = r.n
 	switch {
-	case r.zeros:
-		t.tell(zeroBytes, r.n, 0, "")
+	case r.hidden:
+		t.tell(hiddenRow, r.n, 0, "")
 		return nil
 	case r.quotes:
 		t.tell(badQuote, r.n, 0, "")
@@ -188,13 +198,16 @@ func (t *taker) noReading(r *row, at, temp *field) {
 		p.known = true // the units once more
 	}
 	v, _ := readNumber(temp.b)
+	p.number = v.bad == fine && len(p.time) > 0
 	p.titled = len(temp.b) > 0 && v.bad != fine && !t.r.missing(temp.b) && !p.known
 	t.wait(r, p)
 }
 
 func (t *taker) wait(r *row, p pendingRow) {
+	if p.number {
+		t.below++
+	}
 	if len(t.pending) == mostPending {
-		t.dropped++
 		return
 	}
 	k := keep(r)
@@ -203,22 +216,27 @@ func (t *taker) wait(r *row, p pendingRow) {
 }
 
 // resume decides what the rows were that are followed by a reading: remarks are skipped, the headings of another table end the reading,
-// anything else is wrong.
-func (t *taker) resume(line int32) {
+// anything else is wrong. False if the table has ended.
+func (t *taker) resume(line int32) bool {
 	for _, p := range t.pending {
 		switch {
 		case p.known:
+			if p.heads {
+				t.headsAt = append(t.headsAt, p.line)
+			}
 			t.r.tells.tell(skippedRows, cell.Note, "", p.line, 0, p.text)
 		case p.titled:
 			w := t.r.src.word()
 			t.tell(twoTables, p.line, 0, "", t.r.src.holder(), fmt.Sprintf("%ss %d to %d", w, t.lay.first, t.until), t.r.row(line))
+			t.ended = true
 		case p.time == "":
 			t.tell(timeLacks, p.line, t.lay.time, "")
 		default:
 			t.tell(notTime, p.line, t.lay.time, p.time)
 		}
 	}
-	t.pending, t.dropped = t.pending[:0], 0
+	t.pending, t.below = t.pending[:0], 0
+	return !t.ended
 }
 
 // stamp reads the time of a row; false if it is none.
@@ -232,7 +250,10 @@ func (t *taker) stamp(r *row) (stamp, bool) {
 		if t.swap {
 			s, c = c, s
 		}
-		if s.form != dateStamp || c.form == noStamp || c.form == numberStamp {
+		if s.form == numberStamp && s.plainDate(plainBlanks(r.at(t.dateCol()).b)) {
+			s.form, s.dated = dateStamp, true
+		}
+		if s.form != dateStamp || c.form == noStamp || c.form == numberStamp || s.sec != 0 && s.sec != c.sec {
 			return s, false
 		}
 		s.sec, s.timed, s.groups, s.half, s.zoned, s.east = c.sec, c.timed, c.groups, c.half, c.zoned, c.east
@@ -246,6 +267,9 @@ func (t *taker) reading(r *row, s stamp, temp *field) {
 	if temp.formula || at.formula {
 		t.formulas.add(r.n, t.lay.temp, func() string { return "" })
 	}
+	if t.odd(r, t.lay.time) || t.odd(r, t.lay.clock) || t.odd(r, t.lay.temp) {
+		return
+	}
 	x, ok := t.value(r, temp)
 	t.echo.add(r.n, r.at(t.lay.time).b, r.at(t.lay.clock).b, temp.b)
 	if t.form == noStamp {
@@ -256,14 +280,17 @@ func (t *taker) reading(r *row, s stamp, temp *field) {
 	case s.form != t.form || s.form == clockStamp && s.groups != t.groups:
 		t.tell(otherForm, r.n, t.lay.time, t.typed(r), quote(t.sample))
 		return
-	case s.zoned != t.zoned:
-		t.tell(someZones, r.n, t.lay.time, t.typed(r))
+	case s.zoned && !t.zoned:
+		t.tell(zoneCame, r.n, t.lay.time, t.typed(r))
+		return
+	case t.zoned && !s.zoned:
+		t.tell(zoneLost, r.n, t.lay.time, t.typed(r))
 		return
 	}
 	if s.form == numberStamp && !t.count(r, &s) {
 		return
 	}
-	t.half = t.half || s.half
+	t.half, t.short, t.timed = t.half || s.half, t.short || s.short, t.timed || s.timed
 	t.spread = t.spread || s.east != t.east
 	date := int32(-1)
 	if s.dated {
@@ -272,6 +299,7 @@ func (t *taker) reading(r *row, s stamp, temp *field) {
 	if !ok {
 		return
 	}
+	t.most = max(t.most, s.sec)
 	t.secs = append(t.secs, s.sec-float64(s.east))
 	t.cs = append(t.cs, x)
 	t.lines = append(t.lines, r.n)
@@ -341,7 +369,7 @@ func (t *taker) sign(r *row, col int, sign byte) bool {
 // value reads a temperature; false if there is none.
 func (t *taker) value(r *row, f *field) (float64, bool) {
 	col := t.lay.temp
-	if f.kind == workbook.Blank || f.kind == workbook.Text && t.r.missing(f.b) || f.kind == workbook.Broken {
+	if f.kind == workbook.Blank || (f.kind == workbook.Text || f.kind == workbook.Figure) && t.r.missing(f.b) || f.kind == workbook.Broken {
 		t.noValue(r, f)
 		return 0, false
 	}
@@ -349,7 +377,10 @@ func (t *taker) value(r *row, f *field) (float64, bool) {
 		t.tells(r, f)
 		return 0, false
 	}
-	v, rest := readNumber(f.b)
+	v, rest := readNumber(asStored(f))
+	if f.shown != "" && len(rest) == 0 {
+		rest = []byte(f.shown)
+	}
 	if len(rest) > 0 || v.bad != fine {
 		s := scaleOf(inUTF8(rest))
 		switch {
@@ -393,6 +424,19 @@ good:
 	return v.x, true
 }
 
+// asStored gives a stored number of a workbook as it was meant: 63.3 for 63.299999999999997, which has no more than 15 digits that count.
+func asStored(f *field) []byte {
+	if f.kind != workbook.Figure || len(f.b) < 12 {
+		return f.b
+	}
+	x, err := strconv.ParseFloat(string(f.b), 64)
+	if err != nil {
+		return f.b
+	}
+	rounded, _ := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 15, 64), 64)
+	return strconv.AppendFloat(nil, rounded, 'f', -1, 64)
+}
+
 // What is taken as a temperature of food or its surroundings, °C; beyond, loggers write signs of a fault: −200, 850, 65336, 9.9E37.
 const (
 	leastC = -60
@@ -418,7 +462,7 @@ func (t *taker) noValue(r *row, f *field) {
 func (t *taker) event(r *row) bool {
 	for i := range r.fields {
 		f := &r.fields[i]
-		if c := i + 1; c == t.lay.time || c == t.lay.clock || c == t.lay.temp || f.kind != workbook.Text || t.r.missing(f.b) {
+		if c := i + 1; c == t.lay.time || c == t.lay.clock || c == t.lay.temp || t.lay.status[c] || f.kind != workbook.Text || t.r.missing(f.b) {
 			continue
 		}
 		if readStamp(f.b).form == noStamp {
@@ -442,10 +486,8 @@ func (t *taker) tells(r *row, f *field) {
 
 // finish tells what stands below the table, and what is missing.
 func (t *taker) finish() {
-	if len(t.pending) > 0 {
-		p := t.pending[0]
-		t.r.tells.tell(belowTable, cell.Note, "", p.line, 0, p.text)
-	}
+	t.unseen()
+	t.footer()
 	all := fmt.Sprint(t.rows)
 	of := t.r.src
 	if t.lacking.n > 0 {
@@ -460,6 +502,39 @@ func (t *taker) finish() {
 	if t.formulas.n > 0 {
 		t.r.tells.tell(formulaUsed, cell.Note, "", t.formulas.lines[0], t.formulas.col, "", fmt.Sprint(t.formulas.n), listing(of, t.formulas.lines, t.formulas.n))
 	}
+}
+
+// mostBelow is how many rows of statistics may stand below the readings: of more, or of one that has digits like a time, the times are
+// wrong.
+const mostBelow = 10
+
+// footer looks at what stands below the readings.
+func (t *taker) footer() {
+	if len(t.pending) == 0 || t.ended {
+		return
+	}
+	wrong := false
+	for _, p := range t.pending {
+		if p.number && (t.below > mostBelow || digitsIn(p.time) >= 3) {
+			t.tell(notTime, p.line, t.lay.time, p.time)
+			wrong = true
+		}
+	}
+	if wrong {
+		return
+	}
+	p := t.pending[0]
+	t.r.tells.tell(belowTable, cell.Note, "", p.line, 0, p.text)
+}
+
+func digitsIn(s string) int {
+	n := 0
+	for i := range len(s) {
+		if s[i] >= '0' && s[i] <= '9' {
+			n++
+		}
+	}
+	return n
 }
 
 func degreesC(x float64) string { return strings.Replace(fmt.Sprintf("%g °C", x), "-", "−", 1) }

@@ -23,6 +23,11 @@ func (t *taker) instants() bool {
 
 // calendar adds the days.
 func (t *taker) calendar() bool {
+	if c := t.lay.clocks; c > 0 && !t.timed {
+		both := t.lay.heading(t.lay.time) + " + " + t.lay.heading(c)
+		t.r.problems.Add(needsClock.problem(t.r.set.Cells[setTime], cell.Fault, setTime, t.r.set.Time, cell.ColumnName(c), both))
+		return false
+	}
 	o, ok := t.order()
 	if !ok {
 		return false
@@ -129,9 +134,11 @@ func (t *taker) clocks() bool {
 			t.tell(wrongTick, t.firstAt, t.lay.time, t.sample, u.name)
 			return false
 		}
+	case t.short:
+		kind = minutes
 	case t.half || hasWord(name, dayWords):
 		kind = ofDay
-	case t.groups == 3 && (hasWord(name, spanWords) || t.secs[0] == 0):
+	case t.groups == 3 && (hasWord(name, spanWords) || t.secs[0] == 0 || t.most >= 86400):
 		kind = spans
 	case t.groups == 3 || t.wraps():
 		kind = ofDay
@@ -147,6 +154,11 @@ func (t *taker) clocks() bool {
 			t.secs[i] /= 60
 		}
 	case ofDay:
+		if d := t.lay.dates; d > 0 {
+			both := t.lay.heading(d) + " + " + name
+			t.r.problems.Add(needsDate.problem(t.r.set.Cells[setTime], cell.Fault, setTime, t.r.set.Time, cell.ColumnName(d), both))
+			return false
+		}
 		t.midnights()
 		t.r.clock = true
 	}

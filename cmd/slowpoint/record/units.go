@@ -17,7 +17,7 @@ func (s *scale) celsius(x float64) float64 { return (x - s.zero) / s.per }
 
 // degrees turns what has become of the sign for degrees, through code pages and look-alikes, into the sign.
 var degrees = strings.NewReplacer("Â°", "°", "â„ƒ", "°C", "℃", "°C", "℉", "°F", "º", "°", "˚", "°", "∞", "°", "¡", "°", "\ufffd", "°", "\u0081Ž", "°C", "\u0081‹", "°", "?", "°",
-	"degrees", "°", "Degrees", "°", "deg.", "°", "deg", "°", "Deg", "°", "DEG", "°", "Grad", "°", "grad", "°", "*", "°", " ", "", "\u00a0", "", "\u202f", "", "\u2009", "")
+	"degrees", "°", "Degrees", "°", "deg.", "°", "Deg.", "°", "deg", "°", "Deg", "°", "DEG", "°", "Grad", "°", "grad", "°", "*", "°", " ", "", "\u00a0", "", "\u202f", "", "\u2009", "")
 
 // scaleOf reads a unit of temperature, nil if it is none. A bare letter is one: C, F, K.
 func scaleOf(word string) *scale {
@@ -124,7 +124,7 @@ func titleOf(raw string) title {
 
 // isUnit tells whether a word is a unit that this reader knows, or one of something else that it must not take for a temperature.
 func isUnit(word string) bool {
-	return scaleOf(word) != nil || timeUnit(word) != nil || patternOf(word) != 0
+	return scaleOf(word) != nil || timeUnit(word) != nil || patternOf(word) != 0 || zoneIn(word) != ""
 }
 
 // An order of day, month and year; as a mask, several that are possible.

@@ -12,9 +12,10 @@ type Grid struct {
 	Name       string // as the user named it
 	Rows       []Row
 	Merged     []Block
-	Hidden     bool         // the whole sheet
-	HiddenCols map[int]bool // hidden columns
-	words      []string     // that number formats show behind a number, as 0.0" cm" does
+	Hidden     bool             // the whole sheet
+	HiddenCols map[int]bool     // hidden columns
+	take       func(*Row) error // is given each row instead of Rows; nil if they are kept
+	words      []string         // that number formats show behind a number, as 0.0" cm" does
 	CSV        bool
 	commas     bool   // CSV whose cells are divided by commas
 	Is1904     bool   // its dates count from 1904

@@ -492,11 +492,21 @@ func formOf(code string) Form {
 func (b *book) sheet(r metered, g *Grid, left *int) error {
 	row := Row{}
 	col, filled := 0, 0
-	flush := func() {
-		if len(row.Cells) > 0 {
+	flush := func() error {
+		cells := row.Cells
+		switch {
+		case len(cells) == 0:
+		case g.take != nil:
+			if err := g.take(&row); err != nil {
+				return err
+			}
+			cells = cells[:0]
+		default:
 			g.Rows = append(g.Rows, row)
+			cells = nil
 		}
-		row = Row{N: row.N}
+		row = Row{N: row.N, Cells: cells}
+		return nil
 	}
 	rooted := false
 	err := elements(r, func(d *walker, e xml.StartElement) error {
@@ -512,11 +522,14 @@ func (b *book) sheet(r metered, g *Grid, left *int) error {
 				}
 			}
 			d.m.spare++
-			flush()
+			if err := flush(); err != nil {
+				return err
+			}
 			next, err := startRow(e, row.N)
 			if err != nil {
 				return err
 			}
+			next.Cells = row.Cells
 			row, col = next, 0
 		case "c":
 			if row.N == 0 {
@@ -539,10 +552,12 @@ func (b *book) sheet(r metered, g *Grid, left *int) error {
 				return nil
 			}
 			if len(row.Cells) == 0 {
-				if filled++; filled > mostRows+1000 {
+				if filled++; filled > mostRows+1000 && g.take == nil {
 					g.Refused, g.Mend = fill(tooManyRows.msg, []string{strconv.Itoa(mostRows)}), tooManyRows.hint
 				}
-				row.Cells = make([]Entry, 0, 12)
+				if cap(row.Cells) == 0 {
+					row.Cells = make([]Entry, 0, 12)
+				}
 			}
 			c.Col = int32(col)
 			if g.Refused == "" {
@@ -568,8 +583,10 @@ func (b *book) sheet(r metered, g *Grid, left *int) error {
 		}
 		return nil
 	}, nil)
-	flush()
-	return err
+	if err != nil {
+		return err
+	}
+	return flush()
 }
 
 // What is lower or narrower is a line at most, and nobody sees what is in it.
