@@ -222,12 +222,17 @@ func (d *reading) agree(l *Limit, t *track, verdict Verdict, open func(gap int) 
 	if !ok {
 		return false
 	}
+	moves := l.Kind == ByTheEnd && l.clocked() && v.errK > 0
 	agree := true
 	first, last := math.Inf(1), math.Inf(-1)
 	for _, w := range ws {
-		g := t.judge(l, t.u.course(d.buf, w, open))
+		p := t.u.course(d.buf, w, open)
+		g := t.judge(l, p)
 		if m != nil {
 			m.take(&g)
+		}
+		if moves && !t.steady(l, p, g.Verdict) {
+			agree = false
 		}
 		if g.ClockStartS != nil {
 			first, last = math.Min(first, *g.ClockStartS), math.Max(last, *g.ClockStartS)
@@ -245,6 +250,25 @@ func (d *reading) agree(l *Limit, t *track, verdict Verdict, open func(gap int) 
 		return false
 	}
 	return agree
+}
+
+// steady tells whether a verdict stands with all readings off by the error either way: by the end, a clock that starts later may be
+// less favourable as well as one that starts earlier.
+func (t *track) steady(l *Limit, p path, verdict Verdict) bool {
+	exact := t.courses(p)
+	exact.h.ErrorK, exact.airK = 0, 0
+	shift := func(k float64) {
+		for i := range p.c {
+			p.c[i] += k
+		}
+	}
+	steady := true
+	shift(-t.r.ErrorK)
+	steady = judgeOne(l, exact).Verdict == verdict
+	shift(2 * t.r.ErrorK)
+	steady = steady && judgeOne(l, exact).Verdict == verdict
+	shift(-t.r.ErrorK)
+	return steady
 }
 
 // maySplit tells whether a gap leaves open how many periods there were: the place may have gone in and out of them.

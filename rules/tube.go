@@ -332,13 +332,21 @@ func (u *tube) course(buf *path, w way, open func(gap int) bool) path {
 			}
 		}
 		v := u.c[i]
-		if f < len(u.free) && u.free[f] == i {
+		if f < len(u.free) && u.free[f] == i { // no reading: the course may jump here, so that what ends and what begins here each have their own
 			f++
-			if !before.straight && !now.straight && before.level == now.level {
-				v = before.level
+			w := v
+			if !before.straight {
+				w = before.level
 			}
-		}
-		if i > 0 && !before.straight && before.level != v {
+			if !now.straight {
+				v = now.level
+			}
+			if i > 0 && i < last && w != v {
+				t, c = append(t, u.t[i]), append(c, w)
+			} else if i == last {
+				v = w
+			}
+		} else if i > 0 && !before.straight && before.level != v {
 			emit(u.t[i]-eps, before.level)
 		}
 		emit(u.t[i], v)
