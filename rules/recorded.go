@@ -2,6 +2,7 @@ package rules
 
 import (
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -224,7 +225,10 @@ func (d *reading) agree(l *Limit, t *track, verdict Verdict, open func(gap int) 
 	}
 	moves := l.Kind == ByTheEnd && l.clocked() && v.errK > 0
 	agree := true
-	first, last := math.Inf(1), math.Inf(-1)
+	var clocks []region // by window: between which instants its clock starts, s
+	if l.Kind == ByTheEnd && l.clocked() {
+		clocks = slices.Repeat([]region{{lo: math.Inf(1), hi: math.Inf(-1)}}, len(v.windows()))
+	}
 	for _, w := range ws {
 		p := t.u.course(d.buf, w, open)
 		g := t.judge(l, p)
@@ -234,8 +238,12 @@ func (d *reading) agree(l *Limit, t *track, verdict Verdict, open func(gap int) 
 		if moves && !t.steady(l, p, g.Verdict) {
 			agree = false
 		}
-		if g.ClockStartS != nil {
-			first, last = math.Min(first, *g.ClockStartS), math.Max(last, *g.ClockStartS)
+		for i := range clocks {
+			from, ok, _ := v.clockStart(p, v.windows()[i], tilt{})
+			if !ok {
+				from = -1 // never
+			}
+			clocks[i].lo, clocks[i].hi = math.Min(clocks[i].lo, from), math.Max(clocks[i].hi, from)
 		}
 		if g.Verdict != verdict {
 			if agree = false; m == nil {
@@ -243,10 +251,12 @@ func (d *reading) agree(l *Limit, t *track, verdict Verdict, open func(gap int) 
 			}
 		}
 	}
-	switch {
-	case l.Kind == ByTheEnd && l.clocked() && last-first > 2*t.u.usualS+sameS: // it may have started at any instant between
-		return false
-	case v.single() && verdict != NotApplicable && v.maySplit(t.u, open):
+	for _, c := range clocks {
+		if c.lo < 0 && c.hi >= 0 || c.hi-c.lo > 2*t.u.usualS+sameS { // it may have started at any instant between
+			return false
+		}
+	}
+	if v.single() && verdict != NotApplicable && v.maySplit(t.u, open) {
 		return false
 	}
 	return agree
