@@ -133,3 +133,85 @@ func TestVerdictsOfARecord(t *testing.T) {
 		}
 	}
 }
+
+// cut is a recording of an exact history at one place, each stepS from a first reading on, with a gap and the recorded medium.
+func cut(rnd *rand.Rand, h *model.History, pt model.Point, stepS float64) (r *model.Recording, gapS [2]float64) {
+	r = &model.Recording{Point: pt, Spans: h.Spans, LowC: math.NaN(), HighC: math.NaN(), ErrorK: 0.05, Medium: &model.Trace{}}
+	end := h.EndS()
+	long := 60 * (5 + 60*rnd.Float64())
+	gapS[0] = rnd.Float64() * (end - long)
+	gapS[1] = gapS[0] + long
+	for s := 0.0; s <= end; s += stepS {
+		r.Medium.TimesS, r.Medium.C = append(r.Medium.TimesS, s), append(r.Medium.C, h.MediumC(s+1e-3))
+		if s > gapS[0] && s < gapS[1] {
+			continue
+		}
+		if n := len(r.C); n > 0 && s > r.TimesS[n-1]+1.5*stepS {
+			r.Gaps = []int{n - 1}
+		}
+		r.TimesS, r.C = append(r.TimesS, s), append(r.C, h.At(pt.Place, s))
+	}
+	return r, gapS
+}
+
+// In 1,000 random cuts of exact histories the bounds of a gap hold the truth, and no verdict contradicts that on the exact course.
+func TestGapsOfExactHistories(t *testing.T) {
+	rnd := rand.New(rand.NewSource(11))
+	cases := boundCases()
+	cuts, told, open, tight := 0, 0, 0, 0
+	for n := 0; n < 50; n++ {
+		chill := 15 * rnd.Float64()
+		steps := []model.Step{filmStep(model.Cook, 20+100*rnd.Float64(), 70+110*rnd.Float64(), 10+40*rnd.Float64()),
+			filmStep(model.Rest, 2+20*rnd.Float64(), 18+60*rnd.Float64(), 5+10*rnd.Float64()),
+			filmStep(model.Cool, 30+200*rnd.Float64(), chill, 10+100*rnd.Float64()), filmStep(model.Store, 60, 3+20*rnd.Float64(), 5+10*rnd.Float64())}
+		if rnd.Intn(2) == 0 {
+			steps = append(steps, filmStep(model.Reheat, 3+60*rnd.Float64(), 80+100*rnd.Float64(), 10+100*rnd.Float64()), filmStep(model.Cool, 60, chill, 20))
+		}
+		half := 0.01 + 0.05*rnd.Float64()
+		shape, size := model.Slab, model.Size{ThicknessM: 2 * half}
+		if rnd.Intn(2) == 0 {
+			shape, size = model.Sphere, model.Size{DiameterM: 2 * half}
+		}
+		h := solve(t, shape, size, 2+20*rnd.Float64(), steps...)
+		for k := 0; k < 20; k++ {
+			pt := model.Point{Name: "slowest point"}
+			if k%4 == 3 { // another place
+				pt = model.Point{Name: "probe", Place: model.Place{UpM: half * rnd.Float64()}}
+			}
+			r, _ := cut(rnd, h, pt, []float64{5, 15, 60}[rnd.Intn(3)])
+			u := newTube(r, nil)
+			cuts++
+			for _, g := range u.gaps {
+				for s := g.a; s <= g.b; s += (g.b - g.a) / 200 {
+					if c := h.At(pt.Place, s); c < g.lo-r.ErrorK || c > g.hi+r.ErrorK {
+						t.Fatalf("%d, %d: %g °C at %g s in a gap from %g to %g s between %g and %g °C", n, k, c, s, g.a, g.b, g.lo, g.hi)
+					}
+				}
+				if g.hi-g.lo < 60 {
+					tight++
+				}
+			}
+			l := cases[rnd.Intn(len(cases))].limit(draw{rnd})
+			f := found(t, l, r)
+			if l.Kind == Stated || l.Kind == Delay || l.Kind == Duration {
+				continue
+			}
+			if f.Verdict == CannotTell {
+				open++
+				continue
+			}
+			told++
+			l.Where.Name = "centre"
+			exact := *h
+			if exact.Points = []model.Point{{Name: "centre", Place: pt.Place}}; one(t, l, &exact).Verdict != f.Verdict {
+				if g := one(t, l, &exact); g.Verdict != CannotTell {
+					t.Errorf("%d, %d: %v by the record, %v exactly:\n%s\n%s", n, k, f.Verdict, g.Verdict, f.Why, g.Why)
+				}
+			}
+		}
+	}
+	t.Logf("%d cuts, %d narrow bounds, %d told, %d not", cuts, tight, told, open)
+	if cuts < 1000 || told < 300 {
+		t.Errorf("%d cuts, %d told", cuts, told)
+	}
+}
