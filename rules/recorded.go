@@ -2,6 +2,7 @@ package rules
 
 import (
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -222,15 +223,27 @@ func (d *reading) agree(l *Limit, t *track, verdict Verdict, open func(gap int) 
 	if !ok {
 		return false
 	}
+	moves := l.Kind == ByTheEnd && l.clocked() && v.errK > 0
 	agree := true
-	first, last := math.Inf(1), math.Inf(-1)
+	var clocks []region // by window: between which instants its clock starts, s
+	if l.Kind == ByTheEnd && l.clocked() {
+		clocks = slices.Repeat([]region{{lo: math.Inf(1), hi: math.Inf(-1)}}, len(v.windows()))
+	}
 	for _, w := range ws {
-		g := t.judge(l, t.u.course(d.buf, w, open))
+		p := t.u.course(d.buf, w, open)
+		g := t.judge(l, p)
 		if m != nil {
 			m.take(&g)
 		}
-		if g.ClockStartS != nil {
-			first, last = math.Min(first, *g.ClockStartS), math.Max(last, *g.ClockStartS)
+		if moves && !t.steady(l, p, g.Verdict) {
+			agree = false
+		}
+		for i := range clocks {
+			from, ok, _ := v.clockStart(p, v.windows()[i], tilt{})
+			if !ok {
+				from = -1 // never
+			}
+			clocks[i].lo, clocks[i].hi = math.Min(clocks[i].lo, from), math.Max(clocks[i].hi, from)
 		}
 		if g.Verdict != verdict {
 			if agree = false; m == nil {
@@ -238,13 +251,34 @@ func (d *reading) agree(l *Limit, t *track, verdict Verdict, open func(gap int) 
 			}
 		}
 	}
-	switch {
-	case l.Kind == ByTheEnd && l.clocked() && last-first > 2*t.u.usualS+sameS: // it may have started at any instant between
-		return false
-	case v.single() && verdict != NotApplicable && v.maySplit(t.u, open):
+	for _, c := range clocks {
+		if c.lo < 0 && c.hi >= 0 || c.hi-c.lo > 2*t.u.usualS+sameS { // it may have started at any instant between
+			return false
+		}
+	}
+	if v.single() && verdict != NotApplicable && v.maySplit(t.u, open) {
 		return false
 	}
 	return agree
+}
+
+// steady tells whether a verdict stands with all readings off by the error either way: by the end, a clock that starts later may be
+// less favourable as well as one that starts earlier.
+func (t *track) steady(l *Limit, p path, verdict Verdict) bool {
+	exact := t.courses(p)
+	exact.h.ErrorK, exact.airK = 0, 0
+	shift := func(k float64) {
+		for i := range p.c {
+			p.c[i] += k
+		}
+	}
+	steady := true
+	shift(-t.r.ErrorK)
+	steady = judgeOne(l, exact).Verdict == verdict
+	shift(2 * t.r.ErrorK)
+	steady = steady && judgeOne(l, exact).Verdict == verdict
+	shift(-t.r.ErrorK)
+	return steady
 }
 
 // maySplit tells whether a gap leaves open how many periods there were: the place may have gone in and out of them.

@@ -246,40 +246,109 @@ func clipped(spans []model.Span, a, b, slack float64) []model.Span {
 // surroundings are what is known of the medium beside a record.
 type surroundings struct {
 	m      *model.Trace
-	lo, hi []float64 // extremes of its readings up to each
+	lo, hi []float64 // extremes of its readings up to each, the lowest counted from coldest, the highest from hottest
 	stepS  float64
 	hole   float64 // where its first hole begins, s; +Inf for none
+	// from when on the measured place was the coldest, and the hottest, of the food, s; NaN where that is not known
+	coldest, hottest float64
 }
 
 // newSurroundings prepares the recorded medium; it may be nil.
 func newSurroundings(r *model.Recording) *surroundings {
 	s := &surroundings{m: r.Medium, hole: math.Inf(1)}
-	if s.m == nil || len(s.m.TimesS) == 0 || len(s.m.TimesS) != len(s.m.C) {
+	if s.m == nil || len(s.m.TimesS) == 0 || len(s.m.TimesS) != len(s.m.C) || len(r.Gaps) == 0 && within(r.Spans, r.TimesS) {
 		s.m = nil
 		return s
 	}
 	s.stepS = usualStep(s.m.TimesS)
-	s.lo, s.hi = append([]float64(nil), s.m.C...), append([]float64(nil), s.m.C...)
-	for i := 1; i < len(s.lo); i++ {
-		s.lo[i], s.hi[i] = math.Min(s.lo[i], s.lo[i-1]), math.Max(s.hi[i], s.hi[i-1])
-		if s.m.TimesS[i]-s.m.TimesS[i-1] > farBeyond*s.stepS+sameS && math.IsInf(s.hole, 1) {
+	for i := 1; i < len(s.m.TimesS) && math.IsInf(s.hole, 1); i++ {
+		if s.m.TimesS[i]-s.m.TimesS[i-1] > farBeyond*s.stepS+sameS {
 			s.hole = s.m.TimesS[i-1]
 		}
 	}
+	s.hottest, s.coldest = s.foremost(r, 1), s.foremost(r, -1)
+	s.lo, s.hi = s.running(s.coldest, -1), s.running(s.hottest, 1)
 	return s
+}
+
+// within tells whether steps lie within readings.
+func within(spans []model.Span, t []float64) bool {
+	n := len(spans)
+	return n == 0 || spans[0].StartS >= t[0] && spans[n-1].EndS <= t[len(t)-1]
+}
+
+// running is the extreme of the medium from an instant (NaN: the first reading) up to each of its readings, the warmest (sign 1) or coldest.
+func (s *surroundings) running(from, sign float64) []float64 {
+	out := append([]float64(nil), s.m.C...)
+	for i := 1; i < len(out); i++ {
+		if !(s.m.TimesS[i] <= from) && sign*out[i-1] > sign*out[i] {
+			out[i] = out[i-1]
+		}
+	}
+	return out
+}
+
+// foremostK is how far the slowest point must have fallen from its peak, K, and how many times the error of its readings.
+const foremostK, foremostErrors = 1.0, 4.0
+
+// foremost is from when on the slowest point was the hottest place of the food (sign 1), or the coldest (−1), s; NaN where that is not known.
+// In food that was heated once and then chilled the heat comes in from all sides and leaves again; while places further out are hotter, the
+// slowest point rises, and once it falls it is the hottest (with the heat equation no new peak forms within a food). From then on only the
+// medium can make another place hotter, no hotter than the medium was since. It is not looked for after a second heating, where heat may still
+// be on its way, and not beyond a gap.
+func (s *surroundings) foremost(r *model.Recording, sign float64) float64 {
+	if !same(r.Name, "slowest point") || s.m.TimesS[0] > r.TimesS[0]+farBeyond*s.stepS {
+		return math.NaN()
+	}
+	until := len(r.TimesS)
+	if len(r.Gaps) > 0 {
+		until = slices.Min(r.Gaps) + 1
+	}
+	fall := math.Max(foremostK, foremostErrors*r.ErrorK)
+	turned, peak, k := false, math.Inf(-1), 0
+	for i := 0; i < until; i++ {
+		t, c := r.TimesS[i], sign*r.C[i]
+		for k+1 < len(s.m.TimesS) && s.m.TimesS[k+1] <= t {
+			k++
+		}
+		if s.m.TimesS[k] > s.hole {
+			return math.NaN()
+		}
+		// the warmer of the two readings of the medium beside this one
+		air := math.Max(sign*s.m.C[k], sign*s.m.C[min(k+1, len(s.m.C)-1)])
+		if air >= c {
+			if turned {
+				return math.NaN()
+			}
+			peak = c
+			continue
+		}
+		turned = true
+		if peak = math.Max(peak, c); c <= peak-fall {
+			return t
+		}
+	}
+	return math.NaN()
 }
 
 // bounds are between which temperatures the place may have been in a gap between the readings i and k. No place of a food passes the
 // range of what the food was at and of all surroundings that it has had since (maximum principle): after a cook, places beside the
-// probe may be hotter than it and than the air, and it rises. So the medium counts from the start of the record, not of the gap.
+// probe may be hotter than it and than the air, and it rises. So the medium counts from the start of the record, not of the gap, unless
+// the measured place was the hottest (coldest) one before.
 // Where the medium was not recorded, the range known of it counts; where none is, that of the whole record.
 func (s *surroundings) bounds(r *model.Recording, u *tube, i, k int, iv interval) (lo, hi float64) {
 	lo, hi = math.Min(r.C[i], r.C[k]), math.Max(r.C[i], r.C[k])
 	slack := farBeyond * s.stepS
 	if s.m != nil && s.hole >= iv.b && s.m.TimesS[0] <= r.TimesS[0]+slack && s.m.TimesS[0] <= iv.a+slack && s.m.TimesS[len(s.m.TimesS)-1] >= iv.b-slack {
 		n := min(sort.SearchFloat64s(s.m.TimesS, iv.b), len(s.m.TimesS)-1)
-		lo, hi = math.Min(lo, math.Min(s.lo[n], r.C[0])), math.Max(hi, math.Max(s.hi[n], r.C[0]))
-		return math.Min(lo, u.soFar.lo), math.Max(hi, u.soFar.hi)
+		lo, hi = math.Min(lo, s.lo[n]), math.Max(hi, s.hi[n])
+		if !(s.coldest <= iv.a) {
+			lo = math.Min(lo, u.soFar.lo)
+		}
+		if !(s.hottest <= iv.a) {
+			hi = math.Max(hi, u.soFar.hi)
+		}
+		return lo, hi
 	}
 	switch {
 	case !math.IsNaN(r.LowC) && !math.IsNaN(r.HighC):
@@ -332,13 +401,21 @@ func (u *tube) course(buf *path, w way, open func(gap int) bool) path {
 			}
 		}
 		v := u.c[i]
-		if f < len(u.free) && u.free[f] == i {
+		if f < len(u.free) && u.free[f] == i { // no reading: the course may jump here, so that what ends and what begins here each have their own
 			f++
-			if !before.straight && !now.straight && before.level == now.level {
-				v = before.level
+			w := v
+			if !before.straight {
+				w = before.level
 			}
-		}
-		if i > 0 && !before.straight && before.level != v {
+			if !now.straight {
+				v = now.level
+			}
+			if i > 0 && i < last && w != v {
+				t, c = append(t, u.t[i]), append(c, w)
+			} else if i == last {
+				v = w
+			}
+		} else if i > 0 && !before.straight && before.level != v {
 			emit(u.t[i]-eps, before.level)
 		}
 		emit(u.t[i], v)

@@ -332,6 +332,9 @@ func (v *view) reach() interval {
 	for _, x := range ivs {
 		iv = interval{math.Min(iv.a, x.a), math.Max(iv.b, x.b)}
 	}
+	if v.l.Clock != (Clock{}) && v.h.Recorded { // Time after the clock may be past the window, and a record is known by its knots only
+		iv.b = v.c.end
+	}
 	return iv
 }
 

@@ -11,7 +11,9 @@ import "math"
 //	other way round (hold at or below, stay    one. Freeze: who is at or below From earlier and longer, and then at or below To.
 //	below, by the end at or below, freeze,
 //	cool from a stage)
-//	band, outside                              as much as the ranges allow in the band, and as little: each stretch by itself.
+//	band, outside                              as much as the ranges allow in the band, and as little: each stretch by itself. To
+//	                                           get to the other side of a band a course must pass it, which takes no time but is
+//	                                           not outside.
 //	falling                                    in each gap to the coldest and after that to the warmest; straight everywhere.
 //	cool from a crossing                       the clock starts at the first fall to From after the highest temperature. Earliest: the
 //	                                           highest as early as it can have been, then the coldest course until From; latest: the
@@ -36,9 +38,12 @@ func (v *view) ways(u *tube, open func(gap int) bool) (ws []way, ok bool) {
 		return []way{low, high}, true
 	case Band, Outside:
 		in, out := throughBand((*l.FromC + *l.ToC) / 2)
+		if l.Kind == Outside {
+			out = u.besideBand((*l.FromC + *l.ToC) / 2)
+		}
 		return []way{in, out}, true
 	case Falling:
-		return []way{line, dipped}, true
+		return []way{line, u.settled, u.dipped}, true
 	case CoolWithin, HeatWithin, ByTheEnd:
 		ws = []way{low, high}
 		if !l.clocked() {
@@ -108,12 +113,43 @@ func throughBand(mid float64) (in, out way) {
 	return in, out
 }
 
-// dipped falls to the coldest in a gap and rises to the warmest after that; between usual readings it runs straight.
-func dipped(_ int, lo, hi float64, gap bool) choice {
-	if !gap {
-		return choice{straight: true}
+// besideBand is the way that stays out of a band where it can, on the side of a reading beside it: to change sides it would have to pass.
+func (u *tube) besideBand(mid float64) way {
+	return func(i int, lo, hi float64, _ bool) choice {
+		k := i
+		if u.isFree(k) && !u.isFree(i+1) {
+			k++
+		}
+		if u.isFree(k) && mid-lo > hi-mid || !u.isFree(k) && u.c[k] < mid {
+			return at(lo)
+		}
+		return at(hi)
 	}
-	return choice{visit: [2]float64{lo}, visits: 1, level: hi}
+}
+
+// dipped falls to the coldest in a gap and rises to the warmest after that; between usual readings it runs straight, but for where a step
+// begins between two, which it does at the coldest, or ends, which it does at the warmest. settled does the reverse, and runs straight
+// through a gap.
+func (u *tube) dipped(i int, lo, hi float64, gap bool) choice {
+	switch {
+	case gap:
+		return choice{visit: [2]float64{lo}, visits: 1, level: hi}
+	case u.isFree(i):
+		return at(lo)
+	case u.isFree(i + 1):
+		return at(hi)
+	}
+	return choice{straight: true}
+}
+
+func (u *tube) settled(i int, lo, hi float64, _ bool) choice {
+	switch {
+	case u.isFree(i):
+		return at(hi)
+	case u.isFree(i + 1):
+		return at(lo)
+	}
+	return choice{straight: true}
 }
 
 // within tells whether the stretch i lies in an interval.
@@ -169,7 +205,7 @@ func (u *tube) peaks(w interval, open func(gap int) bool) (first, last peak, ok 
 		if p.stretch < first.stretch {
 			first = p
 		}
-		if p.stretch >= last.stretch {
+		if p.stretch >= last.stretch && r.hi > top { // as warm as an earlier reading is no later peak
 			last = p
 		}
 	}
@@ -252,7 +288,7 @@ func (u *tube) warmed(w interval, from float64, s start) way {
 		}
 		if !runs && s.early && hi >= from {
 			runs = true
-			return choice{visit: [2]float64{hi}, visits: 1, level: s.after(lo, hi, hi)}
+			return choice{visit: [2]float64{from}, visits: 1, level: s.after(lo, hi, hi)}
 		}
 		if !runs && lo >= from {
 			runs = true
