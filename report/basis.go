@@ -15,16 +15,10 @@ import (
 func (x *sheet) basis() {
 	d, h, p := x.doc, x.head, x.p
 	d.heading(say("basis title"), 0, 30)
-	d.heading(say("factors title"), 1, 25)
-	d.text(say("factors note"))
-	rows := x.factors()
-	for i, r := range rows {
-		if rows[i] = r[:2]; r[2] != "" {
-			rows[i][1] = say("factor from", r[1], r[2])
-		}
+	if !p.recorded() {
+		x.factorTable()
+		x.properties()
 	}
-	d.grouped([]col{{title: say("col factor"), wide: 32, bold: true}, {title: say("col used"), wide: frameWide - 32}}, rows, small, func(i int) bool { return i+1 < len(rows) && rows[i+1][0] != "" })
-	x.properties()
 	d.heading(say("method title"), 1, 20)
 	if p.History != nil {
 		d.text(say("method", p.History.Method))
@@ -38,6 +32,20 @@ func (x *sheet) basis() {
 	}
 	d.text(say("rounding"))
 	x.knownAnswers()
+}
+
+// factorTable are the critical factors with the values used.
+func (x *sheet) factorTable() {
+	d := x.doc
+	d.heading(say("factors title"), 1, 25)
+	d.text(say("factors note"))
+	rows := x.factors()
+	for i, r := range rows {
+		if rows[i] = r[:2]; r[2] != "" {
+			rows[i][1] = say("factor from", r[1], r[2])
+		}
+	}
+	d.grouped([]col{{title: say("col factor"), wide: 32, bold: true}, {title: say("col used"), wide: frameWide - 32}}, rows, small, func(i int) bool { return i+1 < len(rows) && rows[i+1][0] != "" })
 }
 
 // significant writes a number with about six digits.

@@ -75,11 +75,19 @@ var triggers = []trigger{
 	}},
 }
 
+// ofCalculation are cautions about how a prediction is made; a record has none of them.
+var ofCalculation = []string{"medium is a set-point", "film coefficient assumed", "water film assumed high", "evaporation left out",
+	"carry-over without evaporation", "properties from composition", "conductivity scatter", "thick food may flow", "layers touch perfectly",
+	"step did not reach its temperature", "step ended by the model"}
+
 // Cautions lists what applies to a product: first the reservations of this table, then those that its findings carry.
 func Cautions(h *Head, p *Product) []Caution {
 	var out []Caution
 	seen := map[string]bool{}
 	for _, t := range triggers {
+		if p.recorded() && slices.Contains(ofCalculation, t.key) {
+			continue
+		}
 		if args, yes := t.due(h, p); yes {
 			out = append(out, Caution{t.key, say("caution "+t.key, args...)})
 			seen[t.key] = true

@@ -239,7 +239,7 @@ func (x *sheet) recordRows() [][]string {
 		}
 		why := sentence(f.Why)
 		if len(f.Notes) > 0 {
-			why += " " + sentence(strings.Join(f.Notes, "; "))
+			why += " " + sentence(notes(f))
 		}
 		if n := len(f.Cells); n > 0 && f.Cells[n-1].Row == 0 { // the reading that decides
 			why += " " + say("record line", f.Cells[n-1].Sheet)

@@ -112,6 +112,9 @@ func (x *sheet) counts() string {
 			n[f.Verdict]++
 		}
 	}
+	if x.p.recorded() {
+		return say("counts record", tallied(n))
+	}
 	return say("counts", tallied(n))
 }
 
@@ -389,6 +392,9 @@ func (x *sheet) advice(dry bool) float64 {
 	lever := x.p.Lever
 	if lever == "" {
 		lever = say("lever none")
+		if x.p.recorded() {
+			lever = say("lever record")
+		}
 	}
 	lever = capped(d.clean(lever), frameWide, kitchen, [...]int{4, 4, 2}[x.short])
 	checks := x.checks()
@@ -462,7 +468,11 @@ func (x *sheet) front() {
 	for _, s := range p.recordSentences() {
 		d.para(s, style{size: body, bold: true, after: 1})
 	}
-	d.text(strings.Join(CautionText()[:2], " ") + say("see cautions"))
+	if p.recorded() {
+		d.text(say("front record") + say("see cautions"))
+	} else {
+		d.text(strings.Join(CautionText()[:2], " ") + say("see cautions"))
+	}
 	for _, g := range p.Judgement.Groups {
 		key := "group all"
 		if g.AnyOf {
@@ -489,7 +499,11 @@ func (x *sheet) front() {
 		d.heading(say("problems title"), 1, 10)
 		x.problems(ps)
 	}
-	d.heading(say("what title"), 1, 20)
+	what := say("what title")
+	if p.recorded() {
+		what = say("what title record")
+	}
+	d.heading(what, 1, 20)
 	d.pairs([][2]string{
 		{say("key product"), p.Product.Name}, {say("key family"), p.Family}, {say("key recipe"), p.RecipeVersion}, {say("key batch"), p.Batch},
 		{say("key process"), p.Process}, {say("key note"), p.Note}, {say("key equipment"), x.perStep(func(s *model.Step) string { return s.Equipment })},
@@ -624,21 +638,37 @@ func (x *sheet) cardRows(f *rules.Finding) [][2]string {
 	if value != "" && finite(f.Required) {
 		value = say("card value", value, h.quantity(f, f.Required, true))
 	}
+	label := say("card found")
+	if x.p.recorded() {
+		label = say("col value")
+	}
 	return [][2]string{
 		{say("card asks"), say("card asks line", ruleName(l), h.asks(l), stages(l), whereAsked(l), f.Level) + x.cardCells(f)},
-		{say("card found"), found(value, f.Why)},
+		{label, found(value, f.Why)},
 		{say("card margin"), x.marginWords(f)},
 		{say("card ends"), x.endsWords(f)},
 		{say("card typed"), x.typedWords(f)},
 		{say("card share"), x.shareWords(f)},
 		{say("card place"), x.placeAndTime(f)},
 		{say("card clock"), x.clockWords(f)},
-		{say("card notes"), strings.Join(f.Notes, "; ")},
+		{say("card notes"), notes(f)},
 		{say("card citation"), x.cited(l)},
 		{say("card ccp"), l.CCP},
 		{say("card hazard"), l.Hazard},
 		{say("card note"), l.Note},
 	}
+}
+
+// notes are the notes of a finding in one text.
+func notes(f *rules.Finding) string {
+	if len(f.Notes) == 1 {
+		return f.Notes[0]
+	}
+	var s []string
+	for _, n := range f.Notes {
+		s = append(s, strings.TrimSuffix(n, "."))
+	}
+	return strings.Join(s, "; ")
 }
 
 // cardCells are the cells of a limit and of the step that decides; "" if none is known.
@@ -652,7 +682,7 @@ func (x *sheet) cardCells(f *rules.Finding) string {
 // placeAndTime is where and when a finding is decided, and in which run.
 func (x *sheet) placeAndTime(f *rules.Finding) string {
 	where, when := f.PlaceName, ""
-	if f.Place != nil {
+	if f.Place != nil && !(x.p.runOf(f).Recorded && *f.Place == model.Place{}) { // of a probe that no point stands for nobody knows more
 		if lies := x.p.productOf(x.p.runOf(f)).Lies(*f.Place); where == "" {
 			where = lies
 		} else if where != lies {

@@ -86,7 +86,10 @@ func judge(cmd *cobra.Command, path, limits string, given workbook.Given, o *che
 		given.Cells["Starts at"] = given.Stages
 	}
 	name := filepath.Base(path)
-	given.Cells["Record"], given.Cells["File"] = strings.TrimSuffix(name, filepath.Ext(name)), "record"
+	given.Cells["Record"], given.Cells["File"] = strings.TrimSuffix(name, filepath.Ext(name)), name
+	if !filepath.IsLocal(name) || strings.ContainsAny(name, `:\\`) {
+		given.Cells["File"] = "record"
+	}
 	if given.Cells["What it measured"] == "" && given.Like == "" {
 		given.Cells["What it measured"] = "slowest point"
 	}
@@ -137,6 +140,9 @@ func judgeAlone(cmd *cobra.Command, plan *workbook.Plan, rec *workbook.Record, p
 		return err
 	}
 	head.Products = 1
+	for _, k := range known() {
+		head.Known = append(head.Known, k.KnownAnswer)
+	}
 	if err := files.makeFolder(o.out); err != nil {
 		return &failure{exitFault, err}
 	}
@@ -201,6 +207,11 @@ func (r *runner) judgedAlone(p *workbook.Product) (*report.Product, error) {
 	}
 	out := &report.Product{Product: p.Product, Steps: p.Steps, Family: p.Family, RecipeVersion: p.RecipeVersion, Batch: p.Batch, Process: p.Process,
 		Note: p.Note, History: m.History, Judgement: m.Judgement, Readings: r.alone.Readings()}
+	for i := range out.Readings {
+		if f := flagOf(out.Readings[i].Column); f != "" {
+			out.Readings[i].At = cell.Ref{Sheet: "--" + f}
+		}
+	}
 	out.Samples = out.History.Sample(r.head.EveryS)
 	out.Measured = []report.Measured{*m}
 	return out, nil
