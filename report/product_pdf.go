@@ -682,7 +682,8 @@ func (x *sheet) cardCells(f *rules.Finding) string {
 // placeAndTime is where and when a finding is decided, and in which run.
 func (x *sheet) placeAndTime(f *rules.Finding) string {
 	where, when := f.PlaceName, ""
-	if f.Place != nil && !(x.p.runOf(f).Recorded && *f.Place == model.Place{}) { // of a probe that no point stands for nobody knows more
+	unknown := x.p.recorded() && f.Place != nil && *f.Place == model.Place{} // a probe that no point stands for
+	if f.Place != nil && !unknown {
 		if lies := x.p.productOf(x.p.runOf(f)).Lies(*f.Place); where == "" {
 			where = lies
 		} else if where != lies {
