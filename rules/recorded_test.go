@@ -91,3 +91,45 @@ func TestRecorded(t *testing.T) {
 		})
 	}
 }
+
+// long is a record of n readings, one a second, in tenths of a kelvin with some noise: a cook, a chill and a long store, with three gaps
+// and a doubted reading.
+func long(n int) *model.Recording {
+	end := float64(n - 1)
+	r := &model.Recording{Point: model.Point{Name: "slowest point"}, LowC: 2, HighC: 85, ErrorK: 0.25,
+		Gaps: []int{n / 3, n / 2, n - n/5}, Doubted: []int{n / 4}, Spans: []model.Span{
+			{EndS: 7200, Step: &model.Step{Stage: model.Cook, Name: "Cook"}}, {StartS: 7200, EndS: 30000, Step: &model.Step{Stage: model.Cool, Name: "Cool"}},
+			{StartS: 30000, EndS: end, Step: &model.Step{Stage: model.Store, Name: "Store"}}}}
+	r.TimesS, r.C = make([]float64, n), make([]float64, n)
+	noise := uint32(1)
+	for i := range r.C {
+		t := float64(i)
+		x := 82 - 77*math.Exp(-t/2400)
+		if t > 7200 {
+			x = 3 + 75*math.Exp(-(t-7200)/4000) + 0.3*math.Sin(t/900)
+		}
+		noise = noise*1664525 + 1013904223
+		r.TimesS[i], r.C[i] = t, math.Round(10*x+float64(noise>>24)/256-0.5)/10
+	}
+	r.C[n/4] += 30
+	return r
+}
+
+// BenchmarkJudgeRecord1M judges a million readings against six limits, on all courses.
+func BenchmarkJudgeRecord1M(b *testing.B) {
+	r := long(1_000_000)
+	limits := sixLimits()
+	b.ReportAllocs()
+	b.ResetTimer()
+	for i := 0; i < b.N; i++ {
+		fs, err := FindRecorded(limits, Recorded{Product: "P", Recording: r})
+		if err != nil {
+			b.Fatal(err)
+		}
+		if i == 0 {
+			for _, f := range fs {
+				b.Log(f.Limit.Name, f.Verdict, f.Why)
+			}
+		}
+	}
+}

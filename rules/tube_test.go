@@ -167,6 +167,17 @@ func TestGapsOfExactHistories(t *testing.T) {
 		if rnd.Intn(2) == 0 {
 			steps = append(steps, filmStep(model.Reheat, 3+60*rnd.Float64(), 80+100*rnd.Float64(), 10+100*rnd.Float64()), filmStep(model.Cool, 60, chill, 20))
 		}
+		for i := 2; i < len(steps) && n%2 == 1; i++ { // air that swings
+			m := &steps[i].Medium
+			end := steps[i].DurationS
+			for s := 300.0; ; s += 300 + 1500*rnd.Float64() {
+				s = math.Min(s, end)
+				m.TimesS, m.C = append(m.TimesS, s), append(m.C, m.C[0]+20*rnd.Float64()*float64(rnd.Intn(2)))
+				if s == end {
+					break
+				}
+			}
+		}
 		half := 0.01 + 0.05*rnd.Float64()
 		shape, size := model.Slab, model.Size{ThicknessM: 2 * half}
 		if rnd.Intn(2) == 0 {

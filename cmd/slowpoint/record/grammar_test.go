@@ -55,6 +55,7 @@ func TestStamps(t *testing.T) {
 		{"Feb 11, 2016 2:05 PM", "2.11.2016 month day year 50700 half"},
 		{"Thu 11/02/2016 14:05", "11.2.2016 50700"},
 		{"11 août 2016", "11.8.2016 day month year"},
+		{"11 Feb 016", "none"}, {"Feb 11, 016", "none"},
 		{"2016-Feb-11", "2016.2.11 year month day"},
 		// clocks and durations
 		{"2:05", "clock2 7500"},
@@ -62,6 +63,7 @@ func TestStamps(t *testing.T) {
 		{"26:00:00", "clock3 93600"},
 		{"2:05 PM", "clock2 50700 half"},
 		{"0:01:02.5", "clock3 62.5"},
+		{"2:05.5", "clock2 7530 short"},
 		// numbers
 		{"0.764", "0.764"},
 		{"0,5", "0.5 comma"},
@@ -78,6 +80,20 @@ func TestStamps(t *testing.T) {
 				t.Errorf("%q is %q, expected %q", c.typed, got, c.want)
 			}
 		})
+	}
+}
+
+// TestHalves holds every word for before and after noon: 12 o'clock is 0 before it.
+func TestHalves(t *testing.T) {
+	for _, c := range []struct{ words, want string }{
+		{"am|AM|a.m.|a. m.|A|dop.|dopoledne|vorm.|vm|fm|f.m.|du matin|matin|de la mañana|da manhã|ant.|antim.|przed południem|ap.|ap|πμ|π.μ.|de|de.|öö|ÖÖ|上午|午前|오전|ص", "13.2.2026 1800 half"},
+		{"pm|PM|p.m.|p. m.|P|odp.|odpoledne|nachm.|nm|em|e.m.|de l'après-midi|soir|de la tarde|de la noche|da tarde|da noite|pom.|po południu|ip.|μμ|μ.μ.|du|du.|ös|ÖS|下午|午後|오후|م", "13.2.2026 45000 half"},
+	} {
+		for _, w := range strings.Split(c.words, "|") {
+			if got := sayStamp(readStamp([]byte("13.2.2026 12:30 " + w))); got != c.want {
+				t.Errorf("%q is %q, expected %q", w, got, c.want)
+			}
+		}
 	}
 }
 
@@ -109,6 +125,9 @@ func sayStamp(s stamp) string {
 	}
 	if s.zoned {
 		fmt.Fprintf(&b, " %+d", s.east)
+	}
+	if s.short {
+		b.WriteString(" short")
 	}
 	if s.half {
 		b.WriteString(" half")

@@ -44,7 +44,7 @@ func keep(r *row) kept {
 	k.fields = make([]field, len(r.fields))
 	k.text = make([]string, len(r.fields))
 	for i, f := range r.fields {
-		k.text[i] = strings.TrimSpace(inUTF8(f.b))
+		k.text[i] = strings.Join(strings.Fields(inUTF8(f.b)), " ")
 		f.b = []byte(k.text[i])
 		k.fields[i] = f
 	}

@@ -199,7 +199,7 @@ func (t *tellings) all() cell.Errors {
 	for _, f := range t.list {
 		p := f.problem
 		if f.n > 1 {
-			p.Msg += " (the same in " + listing(t.of, f.more, f.n-1) + ")"
+			p.Msg += " (likewise in " + listing(t.of, f.more, f.n-1) + ")"
 		}
 		out.Add(p)
 	}

@@ -74,7 +74,7 @@ func (c *cursor) word() string {
 	from := c.i
 	for c.i < len(c.b) {
 		r, n := utf8.DecodeRune(c.b[c.i:])
-		if !unicode.IsLetter(r) && r != '.' && !unicode.IsMark(r) && r != '\'' {
+		if !unicode.IsLetter(r) && r != '.' && !unicode.IsMark(r) && r != '\'' && !(r == '-' && c.i > from && c.i+1 < len(c.b) && c.b[c.i+1] >= 'A') {
 			break
 		}
 		c.i += n
@@ -462,14 +462,14 @@ func (c *cursor) number(s *stamp) bool {
 // halves are the words for before and after noon, without stops and blanks, in small letters (from memory; common practice, no source).
 var halves = map[string]bool{
 	"am": false, "a": false, "pm": true, "p": true, // English; also es a. m., it, pt, hi and others
-	"dop": false, "odp": true, // cs, sk
+	"dop": false, "odp": true, "dopoledne": false, "odpoledne": true, // cs, sk
 	"vorm": false, "vormittags": false, "nachm": true, "nachmittags": true, // de
 	"vm": false, "nm": true, // nl, af
 	"fm": false, "em": true, // sv
 	"matin": false, "dumatin": false, "soir": true, "dusoir": true, "aprèsmidi": true, "delaprèsmidi": true, // fr
 	"delamañana": false, "delatarde": true, "delanoche": true, // es
 	"damanhã": false, "datarde": true, "danoite": true, // pt
-	"antim": false, "pom": true, // it
+	"ant": false, "antim": false, "pom": true, // it
 	"przedpołudniem": false, "popołudniu": true, // pl
 	"ap": false, "ip": true, // fi
 	"πμ": false, "μμ": true, // el

@@ -251,7 +251,7 @@ func (t *taker) stamp(r *row) (stamp, bool) {
 			s, c = c, s
 		}
 		if s.form == numberStamp && s.plainDate(plainBlanks(r.at(t.dateCol()).b)) {
-			s.form, s.dated = dateStamp, true
+			s.form, s.dated, s.sec = dateStamp, true, 0
 		}
 		if s.form != dateStamp || c.form == noStamp || c.form == numberStamp || s.sec != 0 && s.sec != c.sec {
 			return s, false
