@@ -127,11 +127,33 @@ func (g *grid) finish(filter string) {
 	if g.paper == "Letter" {
 		size = 1
 	}
-	_, err := fmt.Fprintf(g.pages[len(g.pages)-1], `</sheetData><autoFilter ref="%s"/><pageMargins left="0.4" right="0.4" top="0.6" bottom="0.6" header="0.3" footer="0.3"/>`+
-		`<pageSetup paperSize="%d" %s orientation="landscape"/></worksheet>`, filter, size, g.scale())
+	_, err := fmt.Fprintf(g.pages[len(g.pages)-1], `</sheetData><autoFilter ref="%s"/>%s<pageMargins left="0.4" right="0.4" top="0.6" bottom="0.6" header="0.3" footer="0.3"/>`+
+		`<pageSetup paperSize="%d" %s orientation="landscape"/></worksheet>`, filter, g.marked(), size, g.scale())
 	g.fail(err)
 	g.filters = append(g.filters, filter)
 }
+
+// marked are the formats of the columns of verdicts: what is not met stands bold in a frame, what cannot be told in slanted type. The words
+// stay as they are, and no colour is needed to tell them apart.
+func (g *grid) marked() string {
+	s, priority := "", 0
+	for i, c := range g.columns {
+		if !strings.HasPrefix(c.head, "Verdict") || g.row < 2 {
+			continue
+		}
+		top := cell.ColumnName(i+1) + "2"
+		s += fmt.Sprintf(`<conditionalFormatting sqref="%s:%s%d">`, top, cell.ColumnName(i+1), g.row)
+		for dxf, word := range markedWords {
+			priority++
+			s += fmt.Sprintf(`<cfRule type="containsText" dxfId="%d" priority="%d" operator="containsText" text="%s"><formula>NOT(ISERROR(SEARCH("%s",%s)))</formula></cfRule>`, dxf, priority, word, word, top)
+		}
+		s += `</conditionalFormatting>`
+	}
+	return s
+}
+
+// markedWords are the verdicts that stand out, in the order of their formats.
+var markedWords = []string{rules.NotMet.String(), rules.CannotTell.String()}
 
 // leastScale is the smallest scale that a sheet is printed at; one that is too wide for it goes on in further pages to the right.
 const leastScale = 0.6
@@ -335,6 +357,20 @@ func makeStyles(f *excelize.File) error {
 		}
 		if id != want+1 {
 			return fmt.Errorf("results.xlsx: style %d came out as %d", want+1, id)
+		}
+	}
+	frame := []excelize.Border{}
+	for _, side := range []string{"left", "right", "top", "bottom"} {
+		frame = append(frame, excelize.Border{Type: side, Color: "000000", Style: 1})
+	}
+	for want, s := range []*excelize.Style{{Font: &excelize.Font{Bold: true}, Border: frame, Fill: excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{"E6E6E6"}}},
+		{Font: &excelize.Font{Italic: true}}} {
+		id, err := f.NewConditionalStyle(s)
+		if err != nil {
+			return err
+		}
+		if id != want {
+			return fmt.Errorf("results.xlsx: conditional style %d came out as %d", want, id)
 		}
 	}
 	return nil

@@ -46,8 +46,8 @@ be used; 3 the results could not be written, or a fault of the program.`,
 	f.StringVar(&o.from, "from", "", "least `VALUE` of the range, as \"20 mm\"")
 	f.StringVar(&o.to, "to", "", "greatest `VALUE` of the range")
 	f.StringVar(&o.step, "step", "", "resolution, `STEP` (default 1 mm or 0.05 in, 1 min, 1 degree)")
-	f.StringVar(&o.out, "out", "", "write size.txt and size.json, with the curves, into `FOLDER`")
-	f.StringVar(&o.date, "date", "", "`DATE` in size.json, as 2026-01-31 (default today)")
+	f.StringVar(&o.out, "out", "", "write size.txt, size.pdf and size.json, with the curves, into `FOLDER`")
+	f.StringVar(&o.date, "date", "", "`DATE` in size.pdf and size.json, as 2026-01-31 (default today)")
 	return cmd
 }
 
@@ -178,8 +178,11 @@ func (s *shelf) writeSizes(folder string, h *report.Head, found []*report.Sizing
 	if err := s.makeFolder(folder); err != nil {
 		return err
 	}
-	text, js := filepath.Join(folder, "size.txt"), filepath.Join(folder, "size.json")
-	s.expect(js, text)
+	text, js, pdf := filepath.Join(folder, "size.txt"), filepath.Join(folder, "size.json"), filepath.Join(folder, "size.pdf")
+	s.expect(js, text, pdf)
+	if err := s.writeWhole(pdf, func(w io.Writer) error { return report.WriteSizesPDF(w, h, found) }); err != nil {
+		return err
+	}
 	if err := s.writeWhole(text, func(w io.Writer) error { return writeSizes(w, h, found, true) }); err != nil {
 		return err
 	}

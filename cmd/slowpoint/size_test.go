@@ -270,6 +270,9 @@ func TestSizeCommand(t *testing.T) {
 	if err != nil || !strings.Contains(string(text), "Deciding limit") {
 		t.Errorf("%v %s", err, text)
 	}
+	if pdf, err := os.ReadFile(filepath.Join(dir, "out", "size.pdf")); err != nil || !bytes.HasPrefix(pdf, []byte("%PDF")) {
+		t.Errorf("size.pdf: %v", err)
+	}
 	b, err := os.ReadFile(filepath.Join(dir, "out", "size.json"))
 	if err != nil {
 		t.Fatal(err)
