@@ -85,7 +85,7 @@ func (t *track) name() string {
 	case t.r.Surface:
 		return "surface"
 	case n == "" || same(n, "other place") || same(n, "medium") || same(n, "every point") || same(n, "surface"):
-		return "measured place"
+		return "place of the probe"
 	default:
 		return n
 	}
