@@ -101,7 +101,10 @@ func (v *view) rose(hot *view, g *Finding) (says, moist string, after interval) 
 		return "", "", from
 	}
 	l := v.l
-	h := holes{"met": say("carried", nil), "place": g.PlaceName, "left": l.degrees(left, -1), "rose": l.degrees(rose, -1)}
+	h := holes{"met": say("carried", nil), "slow": say("slow place", holes{"place": g.PlaceName}), "left": l.degrees(left, -1), "rose": l.degrees(rose, -1)}
+	if v.c.whole != nil {
+		h["slow"] = say("slow place read", holes{"place": g.PlaceName})
+	}
 	for _, r := range v.runs {
 		if math.Abs(r.b-from.a) < sameS {
 			h["stage"] = r.stage.Name

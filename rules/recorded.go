@@ -85,7 +85,7 @@ func (t *track) name() string {
 	case t.r.Surface:
 		return "surface"
 	case n == "" || same(n, "other place") || same(n, "medium") || same(n, "every point") || same(n, "surface"):
-		return "measured place"
+		return "place of the probe"
 	default:
 		return n
 	}
@@ -132,7 +132,9 @@ func (d *reading) find(l *Limit) Finding {
 	every := where == "" || same(where, "every point")
 	switch {
 	case l.Kind == Delay || l.Kind == Duration || l.Kind == Stated:
-		return t.judge(l, t.line)
+		c := t.courses(t.line)
+		c.h.Spans = t.r.Spans // as stated
+		return judgeOne(l, c)
 	case l.Kind == Humidity:
 		return v.blank(CannotTell, say("no humidity read", h))
 	case same(where, "medium") && (d.r.Medium == nil || len(d.r.Medium.TimesS) == 0):
@@ -198,8 +200,9 @@ func (d *reading) bracketed(l *Limit, t *track) Finding {
 		if f.Verdict == Met {
 			f.MarginS, f.MarginK = m.s, m.k
 		}
+		reach := newView(l, t.courses(t.line)).reach()
 		for _, g := range t.u.gaps {
-			if f.Verdict != NotApplicable && g.a < newView(l, t.courses(t.line)).reach().b && g.b > newView(l, t.courses(t.line)).reach().a {
+			if f.Verdict != NotApplicable && g.a < reach.b && g.b > reach.a {
 				f.Notes = append(f.Notes, say("note gap", holes{"from": clockTime(g.a), "until": clockTime(g.b)}))
 				break
 			}

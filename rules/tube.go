@@ -258,6 +258,7 @@ func newSurroundings(r *model.Recording) *surroundings {
 	s := &surroundings{m: r.Medium, hole: math.Inf(1)}
 	if s.m == nil || len(s.m.TimesS) == 0 || len(s.m.TimesS) != len(s.m.C) || len(r.Gaps) == 0 && within(r.Spans, r.TimesS) {
 		s.m = nil
+		s.hottest, s.coldest = s.foremost(r, 1), s.foremost(r, -1)
 		return s
 	}
 	s.stepS = usualStep(s.m.TimesS)
@@ -297,7 +298,12 @@ const foremostK, foremostErrors = 1.0, 4.0
 // medium can make another place hotter, no hotter than the medium was since. It is not looked for after a second heating, where heat may still
 // be on its way, and not beyond a gap.
 func (s *surroundings) foremost(r *model.Recording, sign float64) float64 {
-	if !same(r.Name, "slowest point") || s.m.TimesS[0] > r.TimesS[0]+farBeyond*s.stepS {
+	known := r.HighC // what the medium never was beyond
+	if sign < 0 {
+		known = r.LowC
+	}
+	switch {
+	case !same(r.Name, "slowest point"), s.m == nil && math.IsNaN(known), s.m != nil && s.m.TimesS[0] > r.TimesS[0]+farBeyond*s.stepS:
 		return math.NaN()
 	}
 	until := len(r.TimesS)
@@ -308,14 +314,17 @@ func (s *surroundings) foremost(r *model.Recording, sign float64) float64 {
 	turned, peak, k := false, math.Inf(-1), 0
 	for i := 0; i < until; i++ {
 		t, c := r.TimesS[i], sign*r.C[i]
-		for k+1 < len(s.m.TimesS) && s.m.TimesS[k+1] <= t {
-			k++
+		air := sign * known
+		if s.m != nil {
+			for k+1 < len(s.m.TimesS) && s.m.TimesS[k+1] <= t {
+				k++
+			}
+			if s.m.TimesS[k] > s.hole {
+				return math.NaN()
+			}
+			// the warmer of the two readings of the medium beside this one
+			air = math.Max(sign*s.m.C[k], sign*s.m.C[min(k+1, len(s.m.C)-1)])
 		}
-		if s.m.TimesS[k] > s.hole {
-			return math.NaN()
-		}
-		// the warmer of the two readings of the medium beside this one
-		air := math.Max(sign*s.m.C[k], sign*s.m.C[min(k+1, len(s.m.C)-1)])
 		if air >= c {
 			if turned {
 				return math.NaN()
@@ -342,21 +351,20 @@ func (s *surroundings) bounds(r *model.Recording, u *tube, i, k int, iv interval
 	if s.m != nil && s.hole >= iv.b && s.m.TimesS[0] <= r.TimesS[0]+slack && s.m.TimesS[0] <= iv.a+slack && s.m.TimesS[len(s.m.TimesS)-1] >= iv.b-slack {
 		n := min(sort.SearchFloat64s(s.m.TimesS, iv.b), len(s.m.TimesS)-1)
 		lo, hi = math.Min(lo, s.lo[n]), math.Max(hi, s.hi[n])
-		if !(s.coldest <= iv.a) {
-			lo = math.Min(lo, u.soFar.lo)
-		}
-		if !(s.hottest <= iv.a) {
-			hi = math.Max(hi, u.soFar.hi)
-		}
-		return lo, hi
-	}
-	switch {
-	case !math.IsNaN(r.LowC) && !math.IsNaN(r.HighC):
-		return math.Min(lo, r.LowC), math.Max(hi, r.HighC)
-	case i == k:
+	} else if !math.IsNaN(r.LowC) && !math.IsNaN(r.HighC) {
+		lo, hi = math.Min(lo, r.LowC), math.Max(hi, r.HighC)
+	} else if i == k {
 		return anyLowC, anyHighC
+	} else {
+		return math.Min(lo, u.lowest), math.Max(hi, u.most)
 	}
-	return math.Min(lo, u.lowest), math.Max(hi, u.most)
+	if !(s.coldest <= iv.a) {
+		lo = math.Min(lo, u.soFar.lo)
+	}
+	if !(s.hottest <= iv.a) {
+		hi = math.Max(hi, u.soFar.hi)
+	}
+	return lo, hi
 }
 
 // course writes the course of a way through the tube into buf, with the gaps for which open says no as straight lines.

@@ -21,7 +21,8 @@ import "math"
 //	                                           warmest (no warmer than the highest), or the coldest. The time taken is longest from
 //	                                           the earliest start with the warmest course after it, shortest the other way.
 //	heat from a crossing                       the clock starts when From is first reached. Longest: the warmest course until then and
-//	                                           the coldest after it; shortest the other way.
+//	                                           the coldest after it; shortest the other way, or where a gap lets it start and
+//	                                           be hot at once.
 //	by the end from a crossing                 both starts, each with the coldest and the warmest after it; where the start is not
 //	                                           known within the usual interval, nobody can tell (recorded.go).
 //	delay, duration, stated                    no temperatures.
@@ -64,7 +65,7 @@ func (v *view) ways(u *tube, open func(gap int) bool) (ws []way, ok bool) {
 			for _, w := range wins {
 				ws = append(ws, u.warmed(w.interval, from, start{early: true}))
 			}
-			ws = append(ws, u.every(wins, func(w interval) way { return u.warmed(w, from, start{warm: true}) }))
+			ws = append(ws, u.every(wins, func(w interval) way { return u.warmed(w, from, v.soonest(u, w, from, open)) }))
 		case CoolWithin:
 			for _, w := range wins {
 				ws = append(ws, u.fallen(w.interval, from, start{early: true, warm: true}, open))
@@ -210,6 +211,24 @@ func (u *tube) peaks(w interval, open func(gap int) bool) (first, last peak, ok 
 		}
 	}
 	return first, last, ok
+}
+
+// soonest is how a window for heating is the shortest: with a late start, or with an early one in a gap that lets the place be hot at once.
+func (v *view) soonest(u *tube, w interval, from float64, open func(gap int) bool) start {
+	late, early := start{warm: true}, start{early: true, warm: true}
+	one := func(s start) outcome {
+		worst := nowhere("")
+		for _, x := range v.windows() {
+			if x.interval == w {
+				worst = v.heatWindow(u.course(&path{}, u.warmed(w, from, s), open), x, tilt{rank: true})
+			}
+		}
+		return worst
+	}
+	if worse(one(late), one(early)) {
+		return early
+	}
+	return late
 }
 
 // start says how a course goes through a clock: whether that starts as early as it can or as late, and whether the course is the warmest

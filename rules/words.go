@@ -130,12 +130,14 @@ var words = map[string]string{
 	"who named":  "The {place}",
 	"who medium": "The medium",
 
-	"carry-over":             "{met} only through the rise after the {stage}: the slowest place ({place}) left the {stage} at {left} and rose to {rose}",
+	"carry-over":             "{met} only through the rise after the {stage}: {slow} left the {stage} at {left} and rose to {rose}",
 	"carry-over moist":       "; a moist surface loses heat while standing, so the true rise is smaller",
+	"slow place":             "the slowest place ({place})",
+	"slow place read":        "the {place}",
 	"carried":                "Met",
 	"would be carried":       "It would be met",
 	"carry-over not counted": "That is not counted: it was calculated without the water that moist food loses as it stands open in air, which cools it. Type wet or dry in the column Surface of that step, or the cover, for it to be counted",
-	"carry-over kept":        "{met} only with the time after the {stage}: the slowest place ({place}) left the {stage} at {left}, and the {stage} alone is not enough",
+	"carry-over kept":        "{met} only with the time after the {stage}: {slow} left the {stage} at {left}, and the {stage} alone is not enough",
 	"carry-over kept moist":  "; a moist surface loses heat while standing, so the true food cools faster",
 
 	"note again":        "Rose above {temp} again at {when}; the clock does not start anew.",
