@@ -89,6 +89,7 @@ var (
 	wrongTick      = saying{"is not written as {1}, which the unit of the times says", "correct the unit in Time column"}
 	eitherClock    = saying{"{2} in {3} can be {4} or {5}, and {1} does not say which", "write behind it how the times are meant: {6} (h:mm) or {6} (mm:ss), or {6} (clock) for the time of day"}
 	otherScaleCell = saying{"has another unit than the heading or Temperature column says, {1}", "find out which counts, and correct Temperature column"}
+	scaleCame      = saying{"has a unit, but readings above have none", "write the unit of all behind Temperature column, or export the record in one writing"}
 	mixedScale     = saying{"has another unit than the readings above, {1}", "export the record in one unit"}
 
 	// times

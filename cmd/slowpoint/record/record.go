@@ -7,6 +7,7 @@ import (
 	"math"
 	"path/filepath"
 	"slices"
+	"strings"
 	"time"
 
 	"slowpoint/cmd/slowpoint/workbook"
@@ -211,7 +212,7 @@ func (r *reader) make(t *taker) {
 		return
 	}
 	log.SHA256 = r.src.digest()
-	log.TimeHead, log.Head, log.Unit = l.heading(l.time), l.heading(l.temp), l.scale.name
+	log.TimeHead, log.Head, log.Unit = l.heading(l.time), strings.TrimSpace(l.group+" "+l.heading(l.temp)), l.scale.name
 	if l.clock > 0 {
 		log.TimeHead += " + " + l.heading(l.clock)
 	}
