@@ -52,6 +52,7 @@ type Log struct {
 	Missing      int       // rows without a reading
 	Rows         int       // rows of the table
 	About        []string  // lines above the table, as typed
+	How          string    // how the file was read, as far as that had to be decided: "cells divided by semicolons, decimal comma"
 	Echo         []Echo    // first and last rows as they were understood
 	Problems     cell.Errors
 }
@@ -217,6 +218,7 @@ func (r *reader) make(t *taker) {
 	if l.clock > 0 {
 		log.TimeHead += " + " + l.heading(l.clock)
 	}
+	log.How = t.how()
 	log.Missing, log.Rows = t.lacking.n+t.blanks.n+t.beyond.n, t.rows
 	log.ResolutionK = t.step.size() / l.scale.per
 	r.constant(t)

@@ -15,17 +15,18 @@ type taker struct {
 	r   *reader
 	lay *layout
 
-	form   stampForm // of the times; noStamp until the first one
-	sample string    // the first time as typed
-	swap   bool      // the clocks stand before the dates
-	groups int8      // of clocks: 2 or 3
-	half   bool      // a clock says before or after noon
-	short  bool      // a clock is mm:ss with a fraction
-	timed  bool      // a date has a clock
-	zoned  bool
-	east   int32   // of the zone of the first time
-	spread bool    // zones differ
-	most   float64 // of the times
+	form    stampForm // of the times; noStamp until the first one
+	sample  string    // the first time as typed
+	swap    bool      // the clocks stand before the dates
+	groups  int8      // of clocks: 2 or 3
+	half    bool      // a clock says before or after noon
+	short   bool      // a clock is mm:ss with a fraction
+	timed   bool      // a date has a clock
+	ordered order     // of the dates, if there was a choice
+	zoned   bool
+	east    int32   // of the zone of the first time
+	spread  bool    // zones differ
+	most    float64 // of the times
 
 	secs, cs     []float64 // of each reading: s of its day or as typed; its temperature as typed
 	lines, dates []int32   // its line; its date in seen, -1 if it has none
