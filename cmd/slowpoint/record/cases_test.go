@@ -126,6 +126,9 @@ func said(l *Log, problems cell.Errors) string {
 		fmt.Fprintf(&b, ", from %s", l.Start.Format(form))
 	}
 	fmt.Fprintf(&b, "; %s, %s\n", l.TimeHead, l.Head)
+	if l.How != "" {
+		fmt.Fprintf(&b, "%s\n", l.How)
+	}
 	if len(l.About) > 0 {
 		fmt.Fprintf(&b, "about: %s\n", strings.Join(l.About, " / "))
 	}

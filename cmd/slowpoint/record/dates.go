@@ -5,6 +5,8 @@ import (
 	"math"
 	"math/bits"
 	"time"
+
+	"slowpoint/model/cell"
 )
 
 // A dateKey is a date as it is typed.
@@ -98,8 +100,12 @@ func (t *taker) order() (order, bool) {
 		}
 	}
 	said := t.lay.order
-	if t.r.set.DateOrder != "" {
-		said = orderOf(t.r.set.DateOrder)
+	if set := orderOf(t.r.set.DateOrder); set != 0 {
+		if said != 0 && said != set {
+			t.r.problems.Add(otherOrder.problem(t.r.set.Cells[setOrder], cell.Fault, setOrder, t.r.set.DateOrder, quote(t.lay.heading(t.dateCol())), said.String()))
+			return 0, false
+		}
+		said = set
 	}
 	switch {
 	case said != 0:

@@ -61,6 +61,7 @@ func TestStamps(t *testing.T) {
 		{"2:05", "clock2 7500"},
 		{"14:05:10", "clock3 50710"},
 		{"26:00:00", "clock3 93600"},
+		{"14:05 Z", "none"}, {"14:05:00+01:00", "none"},
 		{"2:05 PM", "clock2 50700 half"},
 		{"0:01:02.5", "clock3 62.5"},
 		{"2:05.5", "clock2 7530 short"},
@@ -402,10 +403,10 @@ func TestLog(t *testing.T) {
 	}
 	var echo []string
 	for _, e := range l.Echo {
-		echo = append(echo, fmt.Sprintf("%d %s %s %g %g", e.Line, e.Time, e.Read, e.S, e.C))
+		echo = append(echo, fmt.Sprintf("%d %s %s %g %g %v", e.Line, e.Time, e.Read, e.S, e.C, e.Taken))
 	}
-	want := "2 2026-02-11 23:50:00 50 0 10.25; 3 2026-02-11 23:51:00 59 60 15.25; 4 2026-02-11 23:52:00 68 120 20.25; " +
-		"8 2026-02-11 23:56:00 104 360 40.25; 9 2026-02-11 23:57:00 113 420 45.25; 10 2026-02-11 23:58:00 122 480 50.25"
+	want := "2 2026-02-11 23:50:00 50 0 10.25 true; 3 2026-02-11 23:51:00 59 60 15.25 true; 4 2026-02-11 23:52:00 68 120 20.25 true; " +
+		"8 2026-02-11 23:56:00 104 360 40.25 true; 9 2026-02-11 23:57:00 113 420 45.25 true; 10 2026-02-11 23:58:00 122 480 50.25 true"
 	if got := strings.Join(echo, "; "); got != want {
 		t.Errorf("echo\n%s, expected\n%s", got, want)
 	}

@@ -21,7 +21,8 @@ type layout struct {
 	heads  int32 // line of the headings; 0 if there are none
 	first  int32 // line of the first reading
 	titles []string
-	time   int // column of times, or of dates where clock is not 0
+	group  string // heading over that of the temperatures, where others have the same one
+	time   int    // column of times, or of dates where clock is not 0
 	clock  int
 	temp   int
 	tick   *tick  // unit of the times; nil if it is not stated
@@ -108,20 +109,22 @@ func wanted(setting, typed string) want {
 	return w
 }
 
-// fits gives the columns of a row whose headings are what is wanted: those that are the same words, else those that are without units;
-// capital letters count where they tell columns apart.
-func (w want) fits(k *kept) []int {
-	if w.sure {
+// fits gives the columns of a row whose headings are what is wanted: those that are the same words, else those that are without units, else
+// those that are with the heading of their group, in the row above, in front. Capital letters count where they tell columns apart.
+func (w want) fits(head []kept, at int) []int {
+	if w.sure || at < 0 {
 		return nil
 	}
-	var alike [4][]int
-	for i, t := range k.text {
+	var alike [5][]int
+	for i, t := range head[at].text {
 		if t == "" {
 			continue
 		}
 		title := titleOf(t)
+		group := groupOf(head, at, i+1)
 		for how, same := range []bool{t == w.raw, workbook.Key(t) == workbook.Key(w.raw), title.name == w.name || t == w.name,
-			workbook.Key(title.name) == workbook.Key(w.name) || workbook.Key(t) == workbook.Key(w.name)} {
+			workbook.Key(title.name) == workbook.Key(w.name) || workbook.Key(t) == workbook.Key(w.name),
+			group != "" && workbook.Key(group+" "+title.name) == workbook.Key(w.name)} {
 			if same {
 				alike[how] = append(alike[how], i+1)
 				break
@@ -134,6 +137,19 @@ func (w want) fits(k *kept) []int {
 		}
 	}
 	return nil
+}
+
+// groupOf is the heading of a group of columns in the row above, which stands over the first of them; "" if there is none.
+func groupOf(head []kept, at, col int) string {
+	if at == 0 || head[at-1].n != head[at].n-1 {
+		return ""
+	}
+	for c := col; c > 0; c-- {
+		if w := head[at-1].word(c); w != "" {
+			return w
+		}
+	}
+	return ""
 }
 
 // wants are the columns that the settings name: that of times, or of dates and of clocks, and that of temperatures.
@@ -153,7 +169,7 @@ func (r *reader) wants(head []kept) (times []want, temp want) {
 
 func anyRow(head []kept, w want) bool {
 	for i := range head {
-		if len(w.fits(&head[i])) > 0 {
+		if len(w.fits(head, i)) > 0 {
 			return true
 		}
 	}
@@ -298,7 +314,7 @@ func (r *reader) headings(head []kept, all []want) int {
 	for i := range head {
 		named, lacks := 0, false
 		for _, w := range all {
-			if len(w.fits(&head[i])) > 0 {
+			if len(w.fits(head, i)) > 0 {
 				named++
 			} else if w.letter == 0 {
 				lacks = true
@@ -317,7 +333,7 @@ func (r *reader) unknownHeading(head []kept, all []want) {
 	best := -1
 	for i := range head { // a row that has some of the wanted columns is better than a guess
 		for _, w := range all {
-			if best < 0 && len(w.fits(&head[i])) > 0 {
+			if best < 0 && len(w.fits(head, i)) > 0 {
 				best = i
 			}
 		}
@@ -330,15 +346,16 @@ func (r *reader) unknownHeading(head []kept, all []want) {
 		return
 	}
 	for _, w := range all {
-		if len(w.fits(&head[at])) == 0 && w.letter == 0 {
-			there := "; its headings, in " + fmt.Sprintf("%s %d, are ", r.src.word(), head[at].n) + r.named(&head[at], nil)
+		if len(w.fits(head, at)) == 0 && w.letter == 0 {
+			there := "; its headings, in " + fmt.Sprintf("%s %d, are ", r.src.word(), head[at].n) + r.named(head, at, nil)
 			r.problems.Add(noHeading.problem(r.set.Cells[w.setting], cell.Fault, w.setting, w.typed, r.src.holder(), there))
 		}
 	}
 }
 
 // named lists headings with their letters; cols nil means all.
-func (r *reader) named(k *kept, cols []int) string {
+func (r *reader) named(head []kept, at int, cols []int) string {
+	k := &head[at]
 	if cols == nil {
 		for i, t := range k.text {
 			if t != "" {
@@ -352,9 +369,24 @@ func (r *reader) named(k *kept, cols []int) string {
 			out = append(out, fmt.Sprintf("%d more", len(cols)-i))
 			break
 		}
-		out = append(out, fmt.Sprintf("%s (%s)", quote(k.word(c)), cell.ColumnName(c)))
+		name := k.word(c)
+		if g := groupOf(head, at, c); g != "" && alike(k, name) > 1 {
+			name = g + " " + name
+		}
+		out = append(out, fmt.Sprintf("%s (%s)", quote(name), cell.ColumnName(c)))
 	}
 	return joined(out, " and ")
+}
+
+// alike counts the headings of the same words.
+func alike(k *kept, name string) int {
+	n := 0
+	for _, t := range k.text {
+		if t == name {
+			n++
+		}
+	}
+	return n
 }
 
 func quote(s string) string { return fmt.Sprintf("%q", shorten(s)) }
@@ -424,7 +456,7 @@ func (r *reader) columns(l *layout, head []kept, at int, times []want, temp want
 	}
 	ok := true
 	for i, w := range times {
-		col, found := r.column(names, head, w)
+		col, found := r.column(head, at, w)
 		ok = ok && found
 		if i == 0 {
 			l.time = col
@@ -434,7 +466,7 @@ func (r *reader) columns(l *layout, head []kept, at int, times []want, temp want
 		r.timeTitle(l, w.title)
 	}
 	if temp.typed != "" {
-		col, found := r.column(names, head, temp)
+		col, found := r.column(head, at, temp)
 		ok = ok && found
 		l.temp = col
 		l.scale = scaleOf(temp.unit)
@@ -445,8 +477,11 @@ func (r *reader) columns(l *layout, head []kept, at int, times []want, temp want
 	if len(times) == 0 && !r.timesByContent(l, head, at) {
 		return false
 	}
-	if temp.typed == "" && !r.tempByContent(l, names) {
+	if temp.typed == "" && !r.tempByContent(l, head, at) {
 		return false
+	}
+	if at >= 0 && alike(names, names.word(l.temp)) > 1 {
+		l.group = groupOf(head, at, l.temp)
 	}
 	if l.temp == l.time || l.temp == l.clock {
 		r.problems.Add(sameColumn.problem(r.set.Cells[setTemp], cell.Fault, setTemp, r.set.Temperature))
@@ -456,16 +491,16 @@ func (r *reader) columns(l *layout, head []kept, at int, times []want, temp want
 }
 
 // column finds the column of one setting.
-func (r *reader) column(names *kept, head []kept, w want) (int, bool) {
+func (r *reader) column(head []kept, at int, w want) (int, bool) {
 	tell := func(s saying, args ...string) (int, bool) {
 		r.problems.Add(s.problem(r.set.Cells[w.setting], cell.Fault, w.setting, w.typed, args...))
 		return 0, false
 	}
-	cols := w.fits(names)
+	cols := w.fits(head, at)
 	switch {
 	case len(cols) > 1:
-		return tell(severalCols, r.named(names, cols))
-	case len(cols) == 1 && w.letter > 0 && w.letter != cols[0] && w.letter <= len(names.text):
+		return tell(severalCols, r.named(head, at, cols))
+	case len(cols) == 1 && w.letter > 0 && w.letter != cols[0] && w.letter <= len(head[at].text):
 		return tell(letterTwice, cell.ColumnName(cols[0]), cell.ColumnName(w.letter))
 	case len(cols) == 1:
 		return cols[0], true
@@ -611,7 +646,7 @@ func (r *reader) about(l *layout, head []kept, at, first int) {
 	}
 	for i := range end {
 		if !head[i].blank() {
-			r.log.About = append(r.log.About, strings.TrimSpace(strings.Join(head[i].text, " ")))
+			r.log.About = append(r.log.About, strings.Join(strings.Fields(strings.Join(head[i].text, " ")), " "))
 		}
 	}
 	if at < 0 {
@@ -687,10 +722,10 @@ func (r *reader) timesByContent(l *layout, head []kept, at int) bool {
 	case len(dates)+len(clocks) == 0 && len(counts) == 1:
 		l.time = counts[0]
 	case len(dates)+len(clocks)+len(counts) == 0:
-		r.problems.Add(noTimes.problem(r.set.Cells[setTime], cell.Fault, setTime, "", ": "+r.named(names, nil)))
+		r.problems.Add(noTimes.problem(r.set.Cells[setTime], cell.Fault, setTime, "", ": "+r.named(head, at, nil)))
 		return false
 	default:
-		r.problems.Add(askColumn.problem(r.set.Cells[setTime], cell.Fault, setTime, "", r.named(names, append(append(dates, clocks...), counts...)), setTime))
+		r.problems.Add(askColumn.problem(r.set.Cells[setTime], cell.Fault, setTime, "", r.named(head, at, append(append(dates, clocks...), counts...)), setTime))
 		return false
 	}
 	return true
@@ -712,7 +747,8 @@ func columnForm(head []kept, at, col int) (form stampForm, dated, timed bool) {
 }
 
 // tempByContent finds the column of temperatures where no setting names it: the only one that is headed as one.
-func (r *reader) tempByContent(l *layout, names *kept) bool {
+func (r *reader) tempByContent(l *layout, head []kept, at int) bool {
+	names := &head[at]
 	var cols []int
 	for c := 1; c <= len(names.text); c++ {
 		t := titleOf(names.word(c))
@@ -725,11 +761,11 @@ func (r *reader) tempByContent(l *layout, names *kept) bool {
 	}
 	switch len(cols) {
 	case 0:
-		r.problems.Add(noTemps.problem(r.set.Cells[setTemp], cell.Fault, setTemp, "", ": "+r.named(names, nil)))
+		r.problems.Add(noTemps.problem(r.set.Cells[setTemp], cell.Fault, setTemp, "", ": "+r.named(head, at, nil)))
 	case 1:
 		l.temp = cols[0]
 	default:
-		r.problems.Add(askColumn.problem(r.set.Cells[setTemp], cell.Fault, setTemp, "", r.named(names, cols), setTemp))
+		r.problems.Add(askColumn.problem(r.set.Cells[setTemp], cell.Fault, setTemp, "", r.named(head, at, cols), setTemp))
 	}
 	return len(cols) == 1
 }

@@ -142,9 +142,7 @@ type divider struct {
 // divide parts a line. open tells that a cell in quotation marks goes on in the next line.
 func (d *divider) divide(line []byte) (fields []field, open, stray bool) {
 	d.fields = d.fields[:0]
-	if n := len(line); n > 0 && line[n-1] == '\r' {
-		line = line[:n-1]
-	}
+	line = bytes.TrimRight(line, "\r")
 	if d.sign != ' ' && bytes.IndexByte(line, '"') < 0 { // the usual case
 		for len(d.fields) < mostFields {
 			i := bytes.IndexByte(line, d.sign)

@@ -89,6 +89,7 @@ var (
 	wrongTick      = saying{"is not written as {1}, which the unit of the times says", "correct the unit in Time column"}
 	eitherClock    = saying{"{2} in {3} can be {4} or {5}, and {1} does not say which", "write behind it how the times are meant: {6} (h:mm) or {6} (mm:ss), or {6} (clock) for the time of day"}
 	otherScaleCell = saying{"has another unit than the heading or Temperature column says, {1}", "find out which counts, and correct Temperature column"}
+	scaleCame      = saying{"has a unit, but readings above have none", "write the unit of all behind Temperature column, or export the record in one writing"}
 	mixedScale     = saying{"has another unit than the readings above, {1}", "export the record in one unit"}
 
 	// times
@@ -98,6 +99,7 @@ var (
 	askOrder     = saying{"The dates of {1} fit several orders: {2} in {3} can be {4}", "fill Date order"}
 	noOrder      = saying{"and the other dates fit no order of day, month and year: {1}", "mend the dates, or export the record with dates as 2026-02-11"}
 	wrongOrder   = saying{"is no date with the order {1}", "correct Date order"}
+	otherOrder   = saying{"is set, but the heading {1} says {2}", "find out which counts; blank takes that of the heading"}
 	noOrderWord  = saying{"is no order of dates", "choose from: day month year, month day year, year month day"}
 	badZone      = saying{"is no offset from UTC", "write it as UTC-07:00"}
 	otherZone    = saying{"says {1}, but the file says {2}", "find out which counts; blank takes that of the file"}

@@ -1,6 +1,7 @@
 package record
 
 import (
+	"bytes"
 	"math"
 	"strconv"
 )
@@ -33,64 +34,26 @@ var pow10 = [...]float64{1, 1e1, 1e2, 1e3, 1e4, 1e5, 1e6, 1e7, 1e8, 1e9, 1e10, 1
 // there may be millions; what has more than 15 of them, or an exponent, goes the slow way.
 func readNumber(b []byte) (v reading, rest []byte) {
 	b = plainBlanks(b)
-	i := 0
-	minus := false
-	if i < len(b) && (b[i] == '-' || b[i] == '+') {
-		minus = b[i] == '-'
-		i++
-		for i < len(b) && b[i] == ' ' {
-			i++
+	from := 0
+	minus := len(b) > 0 && b[0] == '-'
+	if minus || len(b) > 0 && b[0] == '+' {
+		from++
+		for from < len(b) && b[from] == ' ' {
+			from++
 		}
 	}
-	from, count := i, 0
-	v.exact = true
-	for ; i < len(b); i++ {
-		d := b[i]
-		switch {
-		case d >= '0' && d <= '9':
-			if count++; count > 18 {
-				v.exact = false
-				continue
-			}
-			v.whole = 10*v.whole + int64(d-'0')
-			if v.sign != 0 {
-				v.places++
-			} else {
-				v.lead = v.whole
-			}
-			continue
-		case d == '.' || d == ',':
-			if v.sign != 0 {
-				v.bad = noNumber
-				if v.sign != d {
-					v.bad = bothSigns
-				}
-				return v, nil
-			}
-			v.sign = d
-			continue
-		}
-		break
-	}
-	if count == 0 {
+	end, count := v.digits(b, from)
+	if v.bad == fine && count == 0 {
 		v.bad = noNumber
-		if len(b) > 0 && (b[0] == '<' || b[0] == '>' || b[0] == '~' || len(b) > 2 && b[0] == 0xe2 && (b[1] == 0x89)) {
+		if len(b) > 0 && (b[0] == '<' || b[0] == '>' || b[0] == '~' || bytes.HasPrefix(b, []byte("≤")) || bytes.HasPrefix(b, []byte("≥")) || bytes.HasPrefix(b, []byte("≈"))) {
 			v.bad = compared
 		}
+	}
+	if v.bad != fine {
 		return v, nil
 	}
-	end := i
-	if i+1 < len(b) && (b[i] == 'e' || b[i] == 'E') {
-		j := i + 1
-		if b[j] == '-' || b[j] == '+' {
-			j++
-		}
-		if j < len(b) && b[j] >= '0' && b[j] <= '9' {
-			for j < len(b) && b[j] >= '0' && b[j] <= '9' {
-				j++
-			}
-			end, v.exact = j, false
-		}
+	if e := exponent(b[end:]); e > 0 {
+		end, v.exact = end+e, false
 	}
 	if v.exact && count <= 15 {
 		v.x = float64(v.whole) / pow10[v.places] // both are exact, so the quotient is rounded once
@@ -104,6 +67,56 @@ func readNumber(b []byte) (v reading, rest []byte) {
 		end++
 	}
 	return v, b[end:]
+}
+
+// digits reads digits with a decimal sign among them, and gives the place behind them and their number.
+func (v *reading) digits(b []byte, i int) (end, count int) {
+	v.exact = true
+	for ; i < len(b); i++ {
+		switch d := b[i]; {
+		case d >= '0' && d <= '9':
+			if count++; count > 18 {
+				v.exact = false
+				continue
+			}
+			v.whole = 10*v.whole + int64(d-'0')
+			if v.sign != 0 {
+				v.places++
+			} else {
+				v.lead = v.whole
+			}
+		case d != '.' && d != ',':
+			return i, count
+		case v.sign == 0:
+			v.sign = d
+		case v.sign == d:
+			v.bad = noNumber
+			return i, count
+		default:
+			v.bad = bothSigns
+			return i, count
+		}
+	}
+	return i, count
+}
+
+// exponent is the length of the exponent that a text starts with, e-2 or E37; 0 if it starts with none.
+func exponent(b []byte) int {
+	if len(b) < 2 || b[0] != 'e' && b[0] != 'E' {
+		return 0
+	}
+	i := 1
+	if b[1] == '-' || b[1] == '+' {
+		i++
+	}
+	digits := i
+	for i < len(b) && b[i] >= '0' && b[i] <= '9' {
+		i++
+	}
+	if i == digits {
+		return 0
+	}
+	return i
 }
 
 // slow reads a number of many digits or with an exponent.

@@ -7,6 +7,7 @@ import (
 	"math"
 	"path/filepath"
 	"slices"
+	"strings"
 	"time"
 
 	"slowpoint/cmd/slowpoint/workbook"
@@ -40,7 +41,7 @@ type Log struct {
 	Head         string    //
 	Unit         string    // as read or stated: °C, °F, K
 	Start        time.Time // of the first reading, in UTC if Zone was stated; the zero time if the file has no clock
-	Dated        bool      // Start has a date; otherwise only its clock counts
+	Dated        bool      // Start has a date; otherwise only its clock counts (the date is that of no day: 2000-01-01)
 	TimesS       []float64 // s from the first reading, rising strictly
 	C            []float64 // °C, corrected
 	Lines        []int32   // line (text) or row (workbook) of each reading
@@ -51,6 +52,7 @@ type Log struct {
 	Missing      int       // rows without a reading
 	Rows         int       // rows of the table
 	About        []string  // lines above the table, as typed
+	How          string    // how the file was read, as far as that had to be decided: "cells divided by semicolons, decimal comma"
 	Echo         []Echo    // first and last rows as they were understood
 	Problems     cell.Errors
 }
@@ -59,7 +61,8 @@ type Log struct {
 type Echo struct {
 	Line       int32
 	Time, Read string  // as typed
-	S, C       float64 // NaN where the row gives no reading, or one that is left out
+	S, C       float64 // as in the log
+	Taken      bool    // the row gives a reading of the log; otherwise S and C are 0
 }
 
 // Read reads one channel of a logger's file. The problems hold everything that is wrong, in the order of their places; with a Fault among
@@ -211,10 +214,11 @@ func (r *reader) make(t *taker) {
 		return
 	}
 	log.SHA256 = r.src.digest()
-	log.TimeHead, log.Head, log.Unit = l.heading(l.time), l.heading(l.temp), l.scale.name
+	log.TimeHead, log.Head, log.Unit = l.heading(l.time), strings.TrimSpace(l.group+" "+l.heading(l.temp)), l.scale.name
 	if l.clock > 0 {
 		log.TimeHead += " + " + l.heading(l.clock)
 	}
+	log.How = t.how()
 	log.Missing, log.Rows = t.lacking.n+t.blanks.n+t.beyond.n, t.rows
 	log.ResolutionK = t.step.size() / l.scale.per
 	r.constant(t)
@@ -232,7 +236,7 @@ func (r *reader) make(t *taker) {
 	case t.form == dateStamp:
 		log.Start, log.Dated = instant(start), true
 	case r.clock:
-		log.Start = time.Date(1, 1, 1, 0, 0, 0, 0, time.UTC).Add(time.Duration(math.Round(start*1e6)) * time.Microsecond)
+		log.Start = time.Date(2000, 1, 1, 0, 0, 0, 0, time.UTC).Add(time.Duration(math.Round(start*1e6)) * time.Microsecond)
 	}
 	r.echoes(t)
 	r.check(t, start)
@@ -284,9 +288,8 @@ func (r *reader) echoes(t *taker) {
 		}
 	}
 	for _, e := range list {
-		e.S, e.C = math.NaN(), math.NaN()
 		if i := at[e.Line]; i >= 0 {
-			e.S, e.C = r.log.TimesS[i], r.log.C[i]
+			e.S, e.C, e.Taken = r.log.TimesS[i], r.log.C[i], true
 		}
 		r.log.Echo = append(r.log.Echo, e)
 	}

@@ -15,17 +15,18 @@ type taker struct {
 	r   *reader
 	lay *layout
 
-	form   stampForm // of the times; noStamp until the first one
-	sample string    // the first time as typed
-	swap   bool      // the clocks stand before the dates
-	groups int8      // of clocks: 2 or 3
-	half   bool      // a clock says before or after noon
-	short  bool      // a clock is mm:ss with a fraction
-	timed  bool      // a date has a clock
-	zoned  bool
-	east   int32   // of the zone of the first time
-	spread bool    // zones differ
-	most   float64 // of the times
+	form    stampForm // of the times; noStamp until the first one
+	sample  string    // the first time as typed
+	swap    bool      // the clocks stand before the dates
+	groups  int8      // of clocks: 2 or 3
+	half    bool      // a clock says before or after noon
+	short   bool      // a clock is mm:ss with a fraction
+	timed   bool      // a date has a clock
+	ordered order     // of the dates, if there was a choice
+	zoned   bool
+	east    int32   // of the zone of the first time
+	spread  bool    // zones differ
+	most    float64 // of the times
 
 	secs, cs     []float64 // of each reading: s of its day or as typed; its temperature as typed
 	lines, dates []int32   // its line; its date in seen, -1 if it has none
@@ -39,7 +40,8 @@ type taker struct {
 	openComma shownSign // the first number whose comma may divide thousands
 	sure      bool      // a decimal sign is shown that cannot be one of thousands
 	step      grid
-	lead      *scale // unit of the readings in the cells
+	inCells   bool // the unit of the readings stands in the cells
+	bare      bool // a reading has no unit, and none was stated
 
 	rows     int
 	lacking  tally // missing words
@@ -88,7 +90,8 @@ type pendingRow struct {
 	known  bool   // a remark, an event, the headings once more: may stand between readings
 	heads  bool   // the headings once more
 	titled bool   // words in both columns
-	number bool   // a number under the temperatures, and something under the times
+	hidden bool
+	number bool // a number under the temperatures, and something under the times
 }
 
 const mostPending = 50
@@ -211,6 +214,7 @@ func (t *taker) wait(r *row, p pendingRow) {
 		return
 	}
 	k := keep(r)
+	p.hidden = r.hidden
 	p.line, p.text = r.n, strings.Join(strings.Fields(strings.Join(k.text, " ")), " ")
 	t.pending = append(t.pending, p)
 }
@@ -220,6 +224,8 @@ func (t *taker) wait(r *row, p pendingRow) {
 func (t *taker) resume(line int32) bool {
 	for _, p := range t.pending {
 		switch {
+		case p.hidden:
+			t.tell(hiddenRow, p.line, 0, "")
 		case p.known:
 			if p.heads {
 				t.headsAt = append(t.headsAt, p.line)
@@ -381,33 +387,9 @@ func (t *taker) value(r *row, f *field) (float64, bool) {
 	if f.shown != "" && len(rest) == 0 {
 		rest = []byte(f.shown)
 	}
-	if len(rest) > 0 || v.bad != fine {
-		s := scaleOf(inUTF8(rest))
-		switch {
-		case v.bad == compared:
-			t.tell(isCompared, r.n, col, inUTF8(f.b))
-		case v.bad == bothSigns:
-			t.tell(bothPoints, r.n, col, inUTF8(f.b))
-		case v.bad == endless:
-			t.tell(isEndless, r.n, col, inUTF8(f.b))
-		case v.bad != fine || s == nil:
-			t.tell(notReading, r.n, col, inUTF8(f.b))
-		case t.lead == nil:
-			t.lead = s
-			if t.lay.scale != nil && t.lay.scale != s {
-				t.tell(otherScaleCell, r.n, col, inUTF8(f.b), t.lay.scale.name)
-				return 0, false
-			}
-			t.lay.scale = s
-			goto good
-		case t.lay.scale != s:
-			t.tell(mixedScale, r.n, col, inUTF8(f.b), t.lay.scale.name)
-		default:
-			goto good
-		}
+	if !t.sound(r, f, v) || !t.inScale(r, f, rest) {
 		return 0, false
 	}
-good:
 	if v.sign != 0 && f.kind == workbook.Text {
 		if !t.sign(r, col, v.sign) {
 			return 0, false
@@ -422,6 +404,49 @@ good:
 	}
 	t.step.add(v)
 	return v.x, true
+}
+
+// sound tells what is wrong with a number.
+func (t *taker) sound(r *row, f *field, v reading) bool {
+	says := notReading
+	switch v.bad {
+	case fine:
+		return true
+	case compared:
+		says = isCompared
+	case bothSigns:
+		says = bothPoints
+	case endless:
+		says = isEndless
+	}
+	t.tell(says, r.n, t.lay.temp, inUTF8(f.b))
+	return false
+}
+
+// inScale takes the unit that stands behind a reading: all must have the same one, and none another than the heading says.
+func (t *taker) inScale(r *row, f *field, rest []byte) bool {
+	if len(rest) == 0 {
+		t.bare = t.bare || t.lay.scale == nil
+		return true
+	}
+	s, col := scaleOf(inUTF8(rest)), t.lay.temp
+	switch {
+	case s == nil:
+		t.tell(notReading, r.n, col, inUTF8(f.b))
+	case t.lay.scale == nil && t.bare:
+		t.tell(scaleCame, r.n, col, inUTF8(f.b))
+	case t.lay.scale == nil:
+		t.lay.scale = s
+		t.inCells = true
+		return true
+	case t.lay.scale != s && t.inCells:
+		t.tell(mixedScale, r.n, col, inUTF8(f.b), t.lay.scale.name)
+	case t.lay.scale != s:
+		t.tell(otherScaleCell, r.n, col, inUTF8(f.b), t.lay.scale.name)
+	default:
+		return true
+	}
+	return false
 }
 
 // asStored gives a stored number of a workbook as it was meant: 63.3 for 63.299999999999997, which has no more than 15 digits that count.

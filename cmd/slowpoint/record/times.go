@@ -38,6 +38,8 @@ func (t *taker) calendar() bool {
 		of := o
 		if k.order != 0 || k.width[0] == 4 {
 			of = t.seen[i].fits
+		} else {
+			t.ordered = o
 		}
 		days[i] = float64(k.day(of)) * 86400
 	}
