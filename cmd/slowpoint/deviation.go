@@ -20,6 +20,7 @@ const simplifyK = 0.05
 type medium struct {
 	step      int
 	durationS float64
+	ended     bool           // somebody wrote down when the step ended, so that it does not end at a temperature
 	courses   []model.Course // as read, then the ends that the accuracy of the instrument, the simplification and each gap allow
 	manyGaps  bool           // more than were tried at every combination of their ends
 }
@@ -70,6 +71,9 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 		for i, m := range media {
 			st := &q.Steps[m.step]
 			st.Medium, st.Measured, st.DurationS = m.courses[which[i]], true, m.durationS
+			if m.ended {
+				st.UntilC = nil
+			}
 		}
 		return r.judgedBy(&q, model.Options{})
 	}
@@ -155,7 +159,7 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 	if len(st.Medium.TimesS) == 0 {
 		return nil, fault(rec, "What it measured", rec.Measured, st.Name+" has no surroundings with a temperature", "name another step")
 	}
-	from, to, ended := 0.0, 0.0, false
+	from, to := 0.0, 0.0
 	for _, s := range rec.Starts {
 		t, wrong := startOf(rec, log, &s)
 		if wrong != nil {
@@ -172,11 +176,11 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 		case i == air.step:
 			from = t
 		case i == air.step+1:
-			to, ended = t, true
+			to, air.ended = t, true
 		}
 	}
 	air.durationS = lengths[air.step]
-	if ended {
+	if air.ended {
 		air.durationS = to - from
 	}
 	to = from + air.durationS

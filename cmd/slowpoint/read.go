@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -25,6 +26,7 @@ func readCommand() *cobra.Command {
 				return &failure{exitInput, err}
 			}
 			understood(cmd.OutOrStdout(), plan)
+			plan.Problems = append(plan.Problems, understoodRecords(cmd.OutOrStdout(), plan, planFolder(args))...)
 			tellProblems(cmd.OutOrStdout(), plan.Problems)
 			if plan.Problems.Faults() > 0 || plan.NotImported > 0 {
 				return &failure{code: exitInput}
@@ -64,6 +66,29 @@ func understood(w io.Writer, p *workbook.Plan) {
 	for _, n := range p.NotCalculated {
 		fmt.Fprintf(w, "  %s: not calculated (%s)\n", n.Product, count(n.Because.Faults(), "error"))
 	}
+}
+
+// understoodRecords says what the files of records hold, and gives what is wrong with them.
+func understoodRecords(w io.Writer, p *workbook.Plan, folder string) cell.Errors {
+	var all cell.Errors
+	l := newLogs(p, folder)
+	for i := range p.Records {
+		rec := &p.Records[i]
+		if !rec.Sound {
+			fmt.Fprintf(w, "  record %s: not read\n", rec.Name)
+			continue
+		}
+		log, problems := l.read[rec]()
+		all = append(all, problems...)
+		if log == nil {
+			fmt.Fprintf(w, "  record %s: not read (%s)\n", rec.Name, count(problems.Faults(), "error"))
+			continue
+		}
+		n := len(log.TimesS)
+		fmt.Fprintf(w, "  record %s: %s of %s, %s, from %s to %s, %s to %s\n", rec.Name, log.Head, log.Name, count(n, "reading"), shown(log, 0), shown(log, log.TimesS[n-1]),
+			ownScale(slices.Min(log.C), p.Fahrenheit), ownScale(slices.Max(log.C), p.Fahrenheit))
+	}
+	return all
 }
 
 // foodsOf names the food of a product, or those of its layers.
