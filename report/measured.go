@@ -19,6 +19,7 @@ type Measured struct {
 	File, SHA256       string
 	Sheet, Column      string
 	Unit               string // of the file
+	How                string // how the file was read, where that had to be decided
 	Begins             string // the clock of the first reading; "" if the file has none
 	Sensor, Calibrated string
 	Note               string
@@ -43,6 +44,7 @@ type EchoRow struct {
 	Line       int
 	Time, Read string
 	S, C       float64
+	Taken      bool // it is a reading of the record; otherwise S and C say nothing
 }
 
 // Against holds a record against the prediction at one place, with the steps as long as they were.
@@ -122,6 +124,7 @@ func (m *Measured) facts(h *Head) [][2]string {
 		{say("record file"), where},
 		{say("key digest"), m.SHA256},
 		{say("record column"), joined(m.Column, m.Unit)},
+		{say("record how"), m.How},
 		{say("record begins"), m.Begins},
 		{say("record readings"), say("record count", m.Readings, duration(m.StepS, nearest), h.difference(m.ResolutionK, nearest))},
 		{say("record lacking"), lacking},
@@ -296,7 +299,11 @@ func (x *sheet) echo(m *Measured) {
 	}
 	var rows [][]string
 	for _, e := range m.Echo {
-		rows = append(rows, []string{fmt.Sprint(e.Line), e.Time, e.Read, duration(e.S, nearest), x.head.temperature(e.C, nearest)})
+		row := []string{fmt.Sprint(e.Line), e.Time, e.Read, "", say("echo left")}
+		if e.Taken {
+			row[3], row[4] = duration(e.S, nearest), x.head.temperature(e.C, nearest)
+		}
+		rows = append(rows, row)
 	}
 	d.table([]col{{title: say("echo line"), wide: 16}, {title: say("echo time"), wide: 48}, {title: say("echo read"), wide: 34}, {title: say("echo s"), wide: 40}, {title: say("echo c"), wide: frameWide - 138}}, rows, small)
 }

@@ -360,6 +360,8 @@ var words = map[string]string{
 	"record file":               "File",
 	"record sheet":              ", sheet %s",
 	"record column":             "Column",
+	"record how":                "Read as",
+	"echo left":                 "not taken",
 	"record begins":             "First reading at",
 	"record readings":           "Readings",
 	"record count":              "%d, usually %s apart, in steps of %s",

@@ -93,7 +93,7 @@ func check(cmd *cobra.Command, args []string, o *checkOptions, files *shelf) err
 		head.Known = append(head.Known, k.KnownAnswer)
 	}
 	head.Products = len(plan.Products)
-	r := &runner{shelf: files, plan: plan, head: head, logs: newLogs(plan, planFolder(args)), fit: fit, folder: folder, options: o, names: names, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
+	r := &runner{shelf: files, plan: plan, head: head, logs: newLogs(plan, planFolder(args), head.Date), fit: fit, folder: folder, options: o, names: names, progress: progress(cmd.ErrOrStderr(), len(plan.Products))}
 	if err := r.all(); err != nil {
 		return &failure{exitFault, err}
 	}

@@ -127,7 +127,11 @@ func judgeAlone(cmd *cobra.Command, plan *workbook.Plan, rec *workbook.Record, p
 	}
 	report.UseFont(font)
 	defer report.UseFont(nil)
-	setting := settingOf(rec, path)
+	head, err := headOf(plan, o)
+	if err != nil {
+		return err
+	}
+	setting := settingOf(rec, path, head.Date)
 	l := &logs{read: map[*workbook.Record]func() (*record.Log, cell.Errors){rec: sync.OnceValues(func() (*record.Log, cell.Errors) { return record.Read(setting) })}}
 	log, problems := l.read[rec]()
 	if log == nil {
@@ -135,10 +139,7 @@ func judgeAlone(cmd *cobra.Command, plan *workbook.Plan, rec *workbook.Record, p
 		return &failure{exitInput, errors.New("the record could not be read")}
 	}
 	plan.Problems = aboutLimits(plan) // those of the file come with its findings
-	head, err := headOf(plan, o)
-	if err != nil {
-		return err
-	}
+	head.Problems = plan.Problems
 	head.Products = 1
 	for _, k := range known() {
 		head.Known = append(head.Known, k.KnownAnswer)

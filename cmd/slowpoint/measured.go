@@ -19,12 +19,13 @@ import (
 // logs are the files of loggers, each read when it is first asked for.
 type logs struct {
 	folder string // of the plan
+	today  time.Time
 	read   map[*workbook.Record]func() (*record.Log, cell.Errors)
 }
 
-// newLogs makes ready to read the records of a plan that lies in a folder.
-func newLogs(plan *workbook.Plan, folder string) *logs {
-	l := &logs{folder: folder, read: map[*workbook.Record]func() (*record.Log, cell.Errors){}}
+// newLogs makes ready to read the records of a plan that lies in a folder; a clock that is ahead of today is told.
+func newLogs(plan *workbook.Plan, folder string, today time.Time) *logs {
+	l := &logs{folder: folder, today: today, read: map[*workbook.Record]func() (*record.Log, cell.Errors){}}
 	for i := range plan.Records {
 		rec := &plan.Records[i]
 		if rec.Sound {
@@ -44,13 +45,13 @@ func (l *logs) open(rec *workbook.Record) (*record.Log, cell.Errors) {
 			}
 		}
 	}
-	return record.Read(settingOf(rec, path))
+	return record.Read(settingOf(rec, path, l.today))
 }
 
 // settingOf is how the file of a record is to be read.
-func settingOf(rec *workbook.Record, path string) record.Setting {
+func settingOf(rec *workbook.Record, path string, today time.Time) record.Setting {
 	s := record.Setting{File: path, Name: rec.File, Sheet: rec.Sheet, Time: rec.Time, Temperature: rec.Temperature, DateOrder: rec.DateOrder,
-		Zone: rec.Zone, Decimal: rec.Decimal, Missing: rec.Missing, Corrections: rec.CorrectionK, Cells: rec.Cells}
+		Zone: rec.Zone, Decimal: rec.Decimal, Missing: rec.Missing, Corrections: rec.CorrectionK, Cells: rec.Cells, Today: today}
 	if rec.AccuracyK != nil {
 		s.AccuracyK = *rec.AccuracyK
 	}
@@ -244,9 +245,10 @@ func describe(rec *workbook.Record) *report.Measured {
 // facts are what its file says.
 func facts(m *report.Measured, log *record.Log) {
 	m.File, m.SHA256, m.Sheet, m.Column, m.Unit = log.Name, log.SHA256, log.Sheet, log.Head, log.Unit
+	m.How = log.How
 	m.ResolutionK, m.StepS, m.Missing, m.Doubtful, m.About = log.ResolutionK, log.StepS, log.Missing, len(log.Doubtful), log.About
 	for _, e := range log.Echo {
-		m.Echo = append(m.Echo, report.EchoRow{Line: int(e.Line), Time: e.Time, Read: e.Read, S: e.S, C: e.C})
+		m.Echo = append(m.Echo, report.EchoRow{Line: int(e.Line), Time: e.Time, Read: e.Read, S: e.S, C: e.C, Taken: e.Taken})
 	}
 	if !log.Start.IsZero() {
 		m.Begins = shown(log, 0)

@@ -111,7 +111,7 @@ func withAir(t *testing.T, r *runner, minutes, c []float64, accuracyK float64) {
 	logFile(t, dir, "air.csv", minutes, c)
 	r.plan.Records = []workbook.Record{{Name: "Air", Products: []*workbook.Product{&r.plan.Products[0]}, File: "air.csv", Time: "Elapsed (min)", Temperature: "Air (°C)",
 		Measured: "medium of bath", Of: workbook.OfMedium, Step: "bath", AccuracyK: &accuracyK, Sound: true}}
-	r.logs = newLogs(r.plan, dir)
+	r.logs = newLogs(r.plan, dir, time.Time{})
 }
 
 // minutes are the whole minutes up to and with n, and a temperature at each.
@@ -213,7 +213,7 @@ func TestAgainst(t *testing.T) {
 		accuracy := 0.3
 		r.plan.Records = []workbook.Record{{Name: "R", Products: []*workbook.Product{p}, File: "probe.csv", Time: "Elapsed (min)", Temperature: "Air (°C)", Measured: "probe",
 			Of: workbook.AtPoint, Place: p.Points[0], AccuracyK: &accuracy, Sound: true}}
-		r.logs, r.fit = newLogs(r.plan, dir), fitting{film: off == 0}
+		r.logs, r.fit = newLogs(r.plan, dir, time.Time{}), fitting{film: off == 0}
 		r.measure(p, out)
 		m := out.Measured[0]
 		if m.History == nil || m.Against == nil {
@@ -252,7 +252,7 @@ func TestFittedChangesNoVerdict(t *testing.T) {
 		logFile(t, dir, "probe.csv", at, c)
 		r.plan.Records = []workbook.Record{{Name: "R", Products: []*workbook.Product{p}, File: "probe.csv", Time: "Elapsed (min)", Temperature: "Air (°C)", Measured: "slowest point",
 			Of: workbook.AtSlowest, Sound: true}}
-		r.logs, r.fit = newLogs(r.plan, dir), f
+		r.logs, r.fit = newLogs(r.plan, dir, time.Time{}), f
 		r.measure(p, out)
 		if f.film && len(out.Measured[0].Against.Fitted) == 0 {
 			t.Error("nothing was fitted: " + out.Measured[0].Against.NotFitted)

@@ -7,6 +7,7 @@ import (
 	"math"
 	"slices"
 	"strings"
+	"time"
 
 	"github.com/spf13/cobra"
 
@@ -71,7 +72,7 @@ func understood(w io.Writer, p *workbook.Plan) {
 // understoodRecords says what the files of records hold, and gives what is wrong with them.
 func understoodRecords(w io.Writer, p *workbook.Plan, folder string) cell.Errors {
 	var all cell.Errors
-	l := newLogs(p, folder)
+	l := newLogs(p, folder, time.Now())
 	for i := range p.Records {
 		rec := &p.Records[i]
 		if !rec.Sound {
