@@ -477,13 +477,13 @@ func (f *tensor) segAt(t float64) int {
 	return lo
 }
 
-// modeValues fills out with the modes of one axis of a step at x.
+// modeValues fills out with the first modes of one axis of a step at x, as many as there is room for.
 func modeValues(a *axis, b []float64, x float64, out []float64) {
 	n := a.n
 	var phi [maxDegrees]float64
 	a.values(x, phi[:n], nil)
-	clear(out[:n])
-	addColumns(out[:n], b, n, phi[:n])
+	clear(out)
+	addColumns(out, b, n, phi[:n])
 }
 
 func (f *tensor) course(x coord, times, out []float64) {
@@ -498,7 +498,7 @@ func (f *tensor) course(x coord, times, out []float64) {
 		if st != in {
 			in = st
 			for a := range f.axes {
-				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
+				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:f.axes[a].n])
 			}
 			lin[0], lin[1] = buf[:0:8], buf[8:8:16]
 			for _, r := range st.groups {
@@ -744,7 +744,7 @@ func (s *tensorShot) slice(axis int, x coord, node [3]int, out []float64) {
 	for i, c := range still {
 		q[i] += c
 	}
-	toPolynomials(n[axis], st.ax[axis].b, q[:], out)
+	toPolynomials(n[axis], st.ax[axis].b, q[:n[axis]], out)
 }
 
 // along adds to q the modes of one axis, with the others summed up at a place where their modes are v.
@@ -821,10 +821,10 @@ func (s *tensorShot) only(out []float64) {
 	addRows(out, s.sg.step.ax[0].b, s.f.axes[0].n, s.amp[:s.keep[0]])
 }
 
-// toPolynomials turns modes into polynomials: out = b·q.
+// toPolynomials turns the first modes of n into polynomials: out = b·q.
 func toPolynomials(n int, b, q, out []float64) {
 	clear(out[:n])
-	addRows(out[:n], b, n, q[:n])
+	addRows(out[:n], b, n, q)
 }
 
 func (s *tensorShot) mean() float64 {

@@ -133,7 +133,7 @@ func (f *product) course(x coord, times, out []float64) {
 		if st != in {
 			in = st
 			for a := range f.axes {
-				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
+				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:f.axes[a].n])
 			}
 		}
 		tau := min(max(t-st.t0, 0), st.t1-st.t0)
@@ -270,7 +270,7 @@ func (s *productShot) slice(axis int, x coord, node [3]int, out []float64) {
 	var v [3][maxDegrees]float64
 	for a, ax := range f.axes {
 		if a != axis && node[a] < 0 {
-			modeValues(ax, st.ax[a].b, x[a], v[a][:])
+			modeValues(ax, st.ax[a].b, x[a], v[a][:s.keep[a]])
 		}
 	}
 	var q [maxDegrees]float64
@@ -294,7 +294,7 @@ func (s *productShot) slice(axis int, x coord, node [3]int, out []float64) {
 			q[k] += w * c
 		}
 	}
-	toPolynomials(f.axes[axis].n, st.ax[axis].b, q[:], out)
+	toPolynomials(f.axes[axis].n, st.ax[axis].b, q[:s.keep[axis]], out)
 	out[0] += st.mediumC
 }
 
