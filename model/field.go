@@ -81,6 +81,7 @@ type tensorStep struct {
 	meanW  []float64    // by medium: mean of response w
 	gridB  [3][]float64 // gridB[a][g*n+i]: mode i at node g
 	held   []response   // groups at all nodes; made when first needed
+	even   bool         // there is one medium, and it holds all of the food at its own temperature in the long run
 	lines  []response   // one axis: groups as polynomials, made with held
 }
 
@@ -185,6 +186,7 @@ func (f *tensor) run(cs *chainStep) {
 		st.groups = append(st.groups, r)
 		st.meanS, st.meanW = append(st.meanS, st.average(r.s)), append(st.meanW, st.average(r.w))
 	}
+	st.even = m == 1 && st.ax[0].rate[0]+st.ax[1].rate[0]+st.ax[2].rate[0] > 0
 	f.steps = append(f.steps, st)
 	f.segments(cs, st, f.carry(st))
 }
@@ -684,12 +686,26 @@ func (s *tensorShot) grid(out []float64) {
 		return
 	}
 	s.contract(s.amp, s.keep, s.last, st, out)
+	if c, even := s.evenly(); even {
+		for i := range out {
+			out[i] += c
+		}
+		return
+	}
 	for g := range st.held {
 		level, slope := s.sg.level[g]+s.sg.slope[g]*s.tau, s.sg.slope[g]
 		for i, v := range st.held[g].s {
 			out[i] += v*level - st.held[g].w[i]*slope
 		}
 	}
+}
+
+// evenly gives what the media hold at the instant, where that is one temperature: of one medium that does not change.
+func (s *tensorShot) evenly() (c float64, ok bool) {
+	if !s.sg.step.even || s.sg.slope[0] != 0 {
+		return 0, false
+	}
+	return s.sg.level[0], true
 }
 
 // resting gives all modes of what the media hold at the instant.
@@ -740,8 +756,12 @@ func (s *tensorShot) slice(axis int, x coord, node [3]int, out []float64) {
 	}
 	var q [maxDegrees]float64
 	s.along(axis, v, s.amp, s.keep, s.last, q[:])
-	still := s.restAlong(axis, x, v)
-	for i, c := range still {
+	if c, even := s.evenly(); even {
+		toPolynomials(n[axis], st.ax[axis].b, q[:s.keep[axis]], out)
+		out[0] += c
+		return
+	}
+	for i, c := range s.restAlong(axis, x, v) {
 		q[i] += c
 	}
 	toPolynomials(n[axis], st.ax[axis].b, q[:n[axis]], out)
