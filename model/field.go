@@ -81,7 +81,7 @@ type tensorStep struct {
 	meanW  []float64    // by medium: mean of response w
 	gridB  [3][]float64 // gridB[a][g*n+i]: mode i at node g
 	held   []response   // groups at all nodes; made when first needed
-	even   bool         // there is one medium, and it holds all of the food at its own temperature in the long run
+	even   bool         // there is one medium, which does not change and in the long run holds all of the food at its own temperature
 	lines  []response   // one axis: groups as polynomials, made with held
 }
 
@@ -186,7 +186,7 @@ func (f *tensor) run(cs *chainStep) {
 		st.groups = append(st.groups, r)
 		st.meanS, st.meanW = append(st.meanS, st.average(r.s)), append(st.meanW, st.average(r.w))
 	}
-	st.even = m == 1 && st.ax[0].rate[0]+st.ax[1].rate[0]+st.ax[2].rate[0] > 0
+	st.even = m == 1 && len(cs.media[0].C) == 1 && st.ax[0].rate[0]+st.ax[1].rate[0]+st.ax[2].rate[0] > 0
 	f.steps = append(f.steps, st)
 	f.segments(cs, st, f.carry(st))
 }
@@ -398,6 +398,9 @@ func along(in, out, p []float64, outer, n, inner int) {
 // gone is the exponent beyond which a mode is left out: e^-27 of 200 K is 4e-10 K.
 const gone = 27
 
+// faintest is the amplitude below which a mode of several axes is left out, K: thousands of them together stay below flatK.
+const faintest = 1e-11
+
 // decays fills e with exp(-rate·tau) and tells how many are worth keeping.
 func decays(rate []float64, tau float64, e []float64) int {
 	for i, r := range rate {
@@ -428,7 +431,8 @@ func (f *tensor) modes(sg *tensorSeg, tau float64, out []float64) {
 	}
 }
 
-// decaying fills out with what still decays and tells the number of modes by axis that are worth looking at.
+// decaying fills out with what still decays and tells the number of modes by axis that are worth looking at; last of the shot at hand tells
+// more.
 func (f *tensor) decaying(sg *tensorSeg, tau float64, out []float64) (keep [3]int) {
 	if f.single() && sg.step.extra == 0 {
 		k := decays(sg.step.ax[0].rate, tau, out)
@@ -446,22 +450,34 @@ func (f *tensor) decaying(sg *tensorSeg, tau float64, out []float64) (keep [3]in
 	}
 	n1, n2 := f.axes[1].n, f.axes[2].n
 	r0, r1, r2 := sg.step.ax[0].rate, sg.step.ax[1].rate, sg.step.ax[2].rate
+	most := 0
 	for i := 0; i < keep[0]; i++ {
-		for j := 0; j < keep[1]; j++ {
+		rows := f.now.last[i*n1:][:keep[1]]
+		for j := range rows {
 			xy := e[0][i] * e[1][j]
 			at := (i*n1 + j) * n2
 			left, k := gone-(r0[i]+r1[j])*tau, keep[2]
 			for k > 0 && r2[k-1]*tau > left {
 				k--
 			}
-			f.now.last[i*n1+j] = k
 			c, o := sg.c[at:at+k], out[at:at+n2]
 			clear(o[k:])
 			for k, z := range e[2][:k] {
 				o[k] = c[k] * xy * z
 			}
+			for k > 0 && math.Abs(o[k-1]) < faintest {
+				k--
+			}
+			rows[j] = k
+		}
+		for j := keep[1] - 2; j >= 0; j-- { // so that later rows are no longer
+			rows[j] = max(rows[j], rows[j+1])
+		}
+		if rows[0] > 0 {
+			most = i + 1
 		}
 	}
+	keep[0] = max(most, 1)
 	return keep
 }
 
@@ -595,6 +611,9 @@ func (f *tensor) gridValues(st *tensorStep) {
 	for a := range whole {
 		whole[a] = f.axes[a].n
 	}
+	if st.even && !f.single() {
+		return
+	}
 	m := f.nodes.count()
 	for _, r := range st.groups {
 		at := response{f.mem.take(m), f.mem.take(m)}
@@ -686,7 +705,8 @@ func (s *tensorShot) grid(out []float64) {
 		return
 	}
 	s.contract(s.amp, s.keep, s.last, st, out)
-	if c, even := s.evenly(); even {
+	if st.even {
+		c := s.sg.level[0]
 		for i := range out {
 			out[i] += c
 		}
@@ -698,14 +718,6 @@ func (s *tensorShot) grid(out []float64) {
 			out[i] += v*level - st.held[g].w[i]*slope
 		}
 	}
-}
-
-// evenly gives what the media hold at the instant, where that is one temperature: of one medium that does not change.
-func (s *tensorShot) evenly() (c float64, ok bool) {
-	if !s.sg.step.even || s.sg.slope[0] != 0 {
-		return 0, false
-	}
-	return s.sg.level[0], true
 }
 
 // resting gives all modes of what the media hold at the instant.
@@ -751,14 +763,17 @@ func (s *tensorShot) slice(axis int, x coord, node [3]int, out []float64) {
 			v[a] = st.gridB[a][node[a]*ax.n:][:ax.n]
 		default:
 			v[a] = buf[a][:ax.n]
+			if st.even { // of the others all are asked
+				v[a] = buf[a][:s.keep[a]]
+			}
 			modeValues(ax, st.ax[a].b, x[a], v[a])
 		}
 	}
 	var q [maxDegrees]float64
 	s.along(axis, v, s.amp, s.keep, s.last, q[:])
-	if c, even := s.evenly(); even {
+	if st.even {
 		toPolynomials(n[axis], st.ax[axis].b, q[:s.keep[axis]], out)
-		out[0] += c
+		out[0] += s.sg.level[0]
 		return
 	}
 	for i, c := range s.restAlong(axis, x, v) {
