@@ -616,7 +616,8 @@ func (h *History) SampleAt(times []float64) Samples {
 	}
 	courses = courses[len(h.Points)*n:]
 	s.Coldest, s.Hottest, s.Mean = courses[:n:n], courses[n:2*n:2*n], courses[2*n:]
-	s.ColdestAt, s.HottestAt = make([]Place, n), make([]Place, n)
+	places := make([]Place, 2*n)
+	s.ColdestAt, s.HottestAt = places[:n:n], places[n:]
 	if f, ok := h.field.(*tensor); ok && f.single() && f.axes[0].kind != lumped {
 		f.sampleLine(h, &s)
 		return s

@@ -700,7 +700,7 @@ func (s *tensorShot) grid(out []float64) {
 	st := s.sg.step
 	s.f.gridValues(st)
 	if s.f.single() {
-		s.sg.mix(s.tau, out, st.held)
+		s.sg.mix(s.tau, out, 0, st.held)
 		addRows(out, st.gridB[0], s.f.axes[0].n, s.amp[:s.keep[0]])
 		return
 	}
@@ -749,7 +749,7 @@ func (s *tensorShot) resting() []float64 {
 func (s *tensorShot) slice(axis int, x coord, node [3]int, out []float64) {
 	f := s.f
 	if f.single() {
-		s.only(out)
+		s.only(0, out)
 		return
 	}
 	st := s.sg.step
@@ -849,11 +849,12 @@ func (s *tensorShot) restAlong(axis int, x coord, v [3][]float64) []float64 {
 	return k.q
 }
 
-// only gives the polynomials of a field with one axis.
-func (s *tensorShot) only(out []float64) {
-	s.f.polynomialResponses(s.sg.step)
-	s.sg.mix(s.tau, out, s.sg.step.lines)
-	addRows(out, s.sg.step.ax[0].b, s.f.axes[0].n, s.amp[:s.keep[0]])
+// only fills out with the polynomials of a field with one axis, from one of them on.
+func (s *tensorShot) only(from int, out []float64) {
+	st, n := s.sg.step, s.f.axes[0].n
+	s.f.polynomialResponses(st)
+	s.sg.mix(s.tau, out, from, st.lines)
+	addRows(out, st.ax[0].b[from*n:], n, s.amp[:s.keep[0]])
 }
 
 // toPolynomials turns the first modes of n into polynomials: out = b·q.
