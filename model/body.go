@@ -19,12 +19,14 @@ type body struct {
 	order  []int // nodes from the centre outwards
 	rank   []int // by node: its place in order
 	buf    []float64
+	rows   [][2]float64 // the coldest and the hottest in each row of nodes in buf along the last axis that has more than one; filled by lowest
 }
 
 func newBody(of body, nd *nodes) *body {
 	n := nd.count()
 	b := &of
 	b.nodes, b.order, b.rank, b.buf = nd, make([]int, n), make([]int, n), make([]float64, n)
+	b.rows = make([][2]float64, n/b.rowLength())
 	far := make([]float64, n)
 	for i := range b.order {
 		b.order[i] = i
@@ -174,28 +176,46 @@ const rivalShare = 0.15
 
 // rival finds another node, lower than its neighbours, beside which a parabola promises a better place than best (°C); -1 if none.
 func (b *body) rival(first int, sign, reach, best float64) int {
-	stride := b.strides()
+	stride, n := b.strides(), b.rowLength()
 	found, most := -1, sign*best-flatK
 	level := sign*b.buf[first] + reach
-	i, n := 0, len(b.nodes.x[2])
-	for g0 := range b.nodes.x[0] {
-		for g1 := range b.nodes.x[1] {
-			row := b.buf[i : i+n]
-			for g2, c := range row {
-				c *= sign
-				if c > level || g2 > 0 && sign*row[g2-1] < c || g2+1 < n && sign*row[g2+1] < c || i+g2 == first {
-					continue
-				}
-				if g := [3]int{g0, g1, g2}; b.deeper(i+g2, g, stride, sign) {
-					if p := b.promise(i+g2, g, stride, sign); p < most {
-						found, most = i+g2, p
-					}
+	for r := range b.rows {
+		if sign*b.row(r, sign) > level {
+			continue
+		}
+		row := b.buf[r*n:][:n]
+		for k, c := range row {
+			i := r*n + k
+			c *= sign
+			if c > level || k > 0 && sign*row[k-1] < c || k+1 < n && sign*row[k+1] < c || i == first {
+				continue
+			}
+			if g := b.index(i); b.deeper(i, g, stride, sign) {
+				if p := b.promise(i, g, stride, sign); p < most {
+					found, most = i, p
 				}
 			}
-			i += n
 		}
 	}
 	return found
+}
+
+// rowLength is the number of nodes along the last axis that has more than one.
+func (b *body) rowLength() int {
+	for a := 2; a > 0; a-- {
+		if n := len(b.nodes.x[a]); n > 1 {
+			return n
+		}
+	}
+	return len(b.nodes.x[0])
+}
+
+// row gives the coldest (sign 1) or hottest (-1) node of a row.
+func (b *body) row(r int, sign float64) float64 {
+	if sign > 0 {
+		return b.rows[r][0]
+	}
+	return b.rows[r][1]
 }
 
 // strides gives the distance of neighbours in buf, by axis.
@@ -241,12 +261,20 @@ func (b *body) around(n onAxis, sign float64) (x, f [3]float64) {
 // lowest gives the coldest and hottest of the nodes in buf; of those that are as cold or hot the nearest to the centre.
 func (b *body) lowest() (lo, hi int) {
 	cold, hot := b.buf[0], b.buf[0]
-	for _, c := range b.buf {
-		if c < cold {
-			cold = c
-		} else if c > hot {
-			hot = c
+	n := b.rowLength()
+	for r := range b.rows {
+		row := b.buf[r*n:][:n]
+		least, most := row[0], row[0]
+		for _, c := range row[1:] {
+			if c < least {
+				least = c
+			}
+			if c > most {
+				most = c
+			}
 		}
+		b.rows[r] = [2]float64{least, most}
+		cold, hot = min(cold, least), max(hot, most)
 	}
 	return b.nearest(cold+flatK, 1), b.nearest(hot-flatK, -1)
 }
@@ -260,10 +288,16 @@ func (b *body) nearest(level, sign float64) int {
 			}
 		}
 	}
-	best := len(b.rank) - 1
-	for i, c := range b.buf {
-		if sign*(c-level) <= 0 && b.rank[i] < best {
-			best = b.rank[i]
+	best, n := len(b.rank)-1, b.rowLength()
+	for r := range b.rows {
+		if sign*(b.row(r, sign)-level) > 0 {
+			continue
+		}
+		ranks := b.rank[r*n:][:n]
+		for k, c := range b.buf[r*n:][:n] {
+			if sign*(c-level) <= 0 && ranks[k] < best {
+				best = ranks[k]
+			}
 		}
 	}
 	return b.order[best]
@@ -582,7 +616,8 @@ func (h *History) SampleAt(times []float64) Samples {
 	}
 	courses = courses[len(h.Points)*n:]
 	s.Coldest, s.Hottest, s.Mean = courses[:n:n], courses[n:2*n:2*n], courses[2*n:]
-	s.ColdestAt, s.HottestAt = make([]Place, n), make([]Place, n)
+	places := make([]Place, 2*n)
+	s.ColdestAt, s.HottestAt = places[:n:n], places[n:]
 	if f, ok := h.field.(*tensor); ok && f.single() && f.axes[0].kind != lumped {
 		f.sampleLine(h, &s)
 		return s

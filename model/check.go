@@ -342,17 +342,17 @@ const boilsWithinK = 0.5
 
 // water looks for water and steam at temperatures that they do not have in the open.
 func (c *checker) water(st *Step, e *Exposure, field string, low, high float64) {
+	if e.Surface != BoilingWater && e.Surface != WaterBath && e.Surface != StirredWater && e.Surface != Steam {
+		return
+	}
 	b := boilingC(st.AltitudeM)
 	typed := func(x float64) string { return fmt.Sprintf("%g °C", x) }
-	switch e.Surface {
-	case BoilingWater, WaterBath, StirredWater, Steam:
-		if high > b+boilsWithinK {
-			hint := "type the temperature of the water at your altitude (Plan item Altitude)"
-			if e.Surface == Steam {
-				hint = "steam under pressure is outside this program; if the air in an oven is meant, use moving air with its relative humidity"
-			}
-			c.add(e.At, field, typed(high), fmt.Sprintf("water boils at %.1f °C at %g m above the sea", b, st.AltitudeM), hint)
+	if high > b+boilsWithinK {
+		hint := "type the temperature of the water at your altitude (Plan item Altitude)"
+		if e.Surface == Steam {
+			hint = "steam under pressure is outside this program; if the air in an oven is meant, use moving air with its relative humidity"
 		}
+		c.add(e.At, field, typed(high), fmt.Sprintf("water boils at %.1f °C at %g m above the sea", b, st.AltitudeM), hint)
 	}
 	switch {
 	case e.Surface == BoilingWater && low < b-boilingLeastK:

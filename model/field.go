@@ -81,6 +81,7 @@ type tensorStep struct {
 	meanW  []float64    // by medium: mean of response w
 	gridB  [3][]float64 // gridB[a][g*n+i]: mode i at node g
 	held   []response   // groups at all nodes; made when first needed
+	even   bool         // there is one medium, which does not change and in the long run holds all of the food at its own temperature
 	lines  []response   // one axis: groups as polynomials, made with held
 }
 
@@ -185,6 +186,7 @@ func (f *tensor) run(cs *chainStep) {
 		st.groups = append(st.groups, r)
 		st.meanS, st.meanW = append(st.meanS, st.average(r.s)), append(st.meanW, st.average(r.w))
 	}
+	st.even = m == 1 && len(cs.media[0].C) == 1 && st.ax[0].rate[0]+st.ax[1].rate[0]+st.ax[2].rate[0] > 0
 	f.steps = append(f.steps, st)
 	f.segments(cs, st, f.carry(st))
 }
@@ -396,6 +398,9 @@ func along(in, out, p []float64, outer, n, inner int) {
 // gone is the exponent beyond which a mode is left out: e^-27 of 200 K is 4e-10 K.
 const gone = 27
 
+// faintest is the amplitude below which a mode of several axes is left out, K: thousands of them together stay below flatK.
+const faintest = 1e-11
+
 // decays fills e with exp(-rate·tau) and tells how many are worth keeping.
 func decays(rate []float64, tau float64, e []float64) int {
 	for i, r := range rate {
@@ -426,7 +431,8 @@ func (f *tensor) modes(sg *tensorSeg, tau float64, out []float64) {
 	}
 }
 
-// decaying fills out with what still decays and tells the number of modes by axis that are worth looking at.
+// decaying fills out with what still decays and tells the number of modes by axis that are worth looking at; last of the shot at hand tells
+// more.
 func (f *tensor) decaying(sg *tensorSeg, tau float64, out []float64) (keep [3]int) {
 	if f.single() && sg.step.extra == 0 {
 		k := decays(sg.step.ax[0].rate, tau, out)
@@ -444,22 +450,34 @@ func (f *tensor) decaying(sg *tensorSeg, tau float64, out []float64) (keep [3]in
 	}
 	n1, n2 := f.axes[1].n, f.axes[2].n
 	r0, r1, r2 := sg.step.ax[0].rate, sg.step.ax[1].rate, sg.step.ax[2].rate
+	most := 0
 	for i := 0; i < keep[0]; i++ {
-		for j := 0; j < keep[1]; j++ {
+		rows := f.now.last[i*n1:][:keep[1]]
+		for j := range rows {
 			xy := e[0][i] * e[1][j]
 			at := (i*n1 + j) * n2
 			left, k := gone-(r0[i]+r1[j])*tau, keep[2]
 			for k > 0 && r2[k-1]*tau > left {
 				k--
 			}
-			f.now.last[i*n1+j] = k
 			c, o := sg.c[at:at+k], out[at:at+n2]
 			clear(o[k:])
 			for k, z := range e[2][:k] {
 				o[k] = c[k] * xy * z
 			}
+			for k > 0 && math.Abs(o[k-1]) < faintest {
+				k--
+			}
+			rows[j] = k
+		}
+		for j := keep[1] - 2; j >= 0; j-- { // so that later rows are no longer
+			rows[j] = max(rows[j], rows[j+1])
+		}
+		if rows[0] > 0 {
+			most = i + 1
 		}
 	}
+	keep[0] = max(most, 1)
 	return keep
 }
 
@@ -477,13 +495,13 @@ func (f *tensor) segAt(t float64) int {
 	return lo
 }
 
-// modeValues fills out with the modes of one axis of a step at x.
+// modeValues fills out with the first modes of one axis of a step at x, as many as there is room for.
 func modeValues(a *axis, b []float64, x float64, out []float64) {
 	n := a.n
 	var phi [maxDegrees]float64
 	a.values(x, phi[:n], nil)
-	clear(out[:n])
-	addColumns(out[:n], b, n, phi[:n])
+	clear(out)
+	addColumns(out, b, n, phi[:n])
 }
 
 func (f *tensor) course(x coord, times, out []float64) {
@@ -498,7 +516,7 @@ func (f *tensor) course(x coord, times, out []float64) {
 		if st != in {
 			in = st
 			for a := range f.axes {
-				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
+				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:f.axes[a].n])
 			}
 			lin[0], lin[1] = buf[:0:8], buf[8:8:16]
 			for _, r := range st.groups {
@@ -593,6 +611,9 @@ func (f *tensor) gridValues(st *tensorStep) {
 	for a := range whole {
 		whole[a] = f.axes[a].n
 	}
+	if st.even && !f.single() {
+		return
+	}
 	m := f.nodes.count()
 	for _, r := range st.groups {
 		at := response{f.mem.take(m), f.mem.take(m)}
@@ -679,11 +700,18 @@ func (s *tensorShot) grid(out []float64) {
 	st := s.sg.step
 	s.f.gridValues(st)
 	if s.f.single() {
-		s.sg.mix(s.tau, out, st.held)
+		s.sg.mix(s.tau, out, 0, st.held)
 		addRows(out, st.gridB[0], s.f.axes[0].n, s.amp[:s.keep[0]])
 		return
 	}
 	s.contract(s.amp, s.keep, s.last, st, out)
+	if st.even {
+		c := s.sg.level[0]
+		for i := range out {
+			out[i] += c
+		}
+		return
+	}
 	for g := range st.held {
 		level, slope := s.sg.level[g]+s.sg.slope[g]*s.tau, s.sg.slope[g]
 		for i, v := range st.held[g].s {
@@ -721,7 +749,7 @@ func (s *tensorShot) resting() []float64 {
 func (s *tensorShot) slice(axis int, x coord, node [3]int, out []float64) {
 	f := s.f
 	if f.single() {
-		s.only(out)
+		s.only(0, out)
 		return
 	}
 	st := s.sg.step
@@ -735,16 +763,23 @@ func (s *tensorShot) slice(axis int, x coord, node [3]int, out []float64) {
 			v[a] = st.gridB[a][node[a]*ax.n:][:ax.n]
 		default:
 			v[a] = buf[a][:ax.n]
+			if st.even { // of the others all are asked
+				v[a] = buf[a][:s.keep[a]]
+			}
 			modeValues(ax, st.ax[a].b, x[a], v[a])
 		}
 	}
 	var q [maxDegrees]float64
 	s.along(axis, v, s.amp, s.keep, s.last, q[:])
-	still := s.restAlong(axis, x, v)
-	for i, c := range still {
+	if st.even {
+		toPolynomials(n[axis], st.ax[axis].b, q[:s.keep[axis]], out)
+		out[0] += s.sg.level[0]
+		return
+	}
+	for i, c := range s.restAlong(axis, x, v) {
 		q[i] += c
 	}
-	toPolynomials(n[axis], st.ax[axis].b, q[:], out)
+	toPolynomials(n[axis], st.ax[axis].b, q[:n[axis]], out)
 }
 
 // along adds to q the modes of one axis, with the others summed up at a place where their modes are v.
@@ -814,17 +849,18 @@ func (s *tensorShot) restAlong(axis int, x coord, v [3][]float64) []float64 {
 	return k.q
 }
 
-// only gives the polynomials of a field with one axis.
-func (s *tensorShot) only(out []float64) {
-	s.f.polynomialResponses(s.sg.step)
-	s.sg.mix(s.tau, out, s.sg.step.lines)
-	addRows(out, s.sg.step.ax[0].b, s.f.axes[0].n, s.amp[:s.keep[0]])
+// only fills out with the polynomials of a field with one axis, from one of them on.
+func (s *tensorShot) only(from int, out []float64) {
+	st, n := s.sg.step, s.f.axes[0].n
+	s.f.polynomialResponses(st)
+	s.sg.mix(s.tau, out, from, st.lines)
+	addRows(out, st.ax[0].b[from*n:], n, s.amp[:s.keep[0]])
 }
 
-// toPolynomials turns modes into polynomials: out = b·q.
+// toPolynomials turns the first modes of n into polynomials: out = b·q.
 func toPolynomials(n int, b, q, out []float64) {
 	clear(out[:n])
-	addRows(out[:n], b, n, q[:n])
+	addRows(out[:n], b, n, q)
 }
 
 func (s *tensorShot) mean() float64 {

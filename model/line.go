@@ -180,7 +180,7 @@ func (w *lineSampler) restPolynomials() []float64 {
 	line := w.restLine[:w.f.axes[0].n]
 	if !w.restLined {
 		w.restLined = true
-		w.sg.mix(w.tau, line, w.sg.step.lines)
+		w.sg.mix(w.tau, line, 0, w.sg.step.lines)
 	}
 	return line
 }
@@ -306,7 +306,7 @@ func (w *lineSampler) fill() {
 	}
 	if !w.gridded {
 		w.gridded = true
-		w.sg.mix(w.tau, w.restGrid, st.held)
+		w.sg.mix(w.tau, w.restGrid, 0, st.held)
 	}
 	copy(w.b.buf, w.restGrid)
 	addRows(w.b.buf, st.gridB[0], n, w.amp[:w.keep])
@@ -349,19 +349,20 @@ func (sg *tensorSeg) moves() bool {
 	return false
 }
 
-// mix fills out with what the media hold, tau after the start of a segment: r are the responses to each, in any form.
-func (sg *tensorSeg) mix(tau float64, out []float64, r []response) {
+// mix fills out with what the media hold, tau after the start of a segment: r are the responses to each, in any form, read from one number on.
+func (sg *tensorSeg) mix(tau float64, out []float64, from int, r []response) {
 	clear(out)
 	for g := range r {
 		level, slope := sg.level[g]+sg.slope[g]*tau, sg.slope[g]
+		held := r[g].s[from:][:len(out)]
 		if slope == 0 {
-			for i, v := range r[g].s {
+			for i, v := range held {
 				out[i] += v * level
 			}
 			continue
 		}
-		w := r[g].w
-		for i, v := range r[g].s {
+		w := r[g].w[from:][:len(out)]
+		for i, v := range held {
 			out[i] += v*level - w[i]*slope
 		}
 	}

@@ -133,7 +133,7 @@ func (f *product) course(x coord, times, out []float64) {
 		if st != in {
 			in = st
 			for a := range f.axes {
-				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:])
+				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:f.axes[a].n])
 			}
 		}
 		tau := min(max(t-st.t0, 0), st.t1-st.t0)
@@ -201,28 +201,58 @@ func (s *productShot) grid(out []float64) {
 			st.gridB[a] = nodeModes(f.mem, f.axes[a], f.nodes, a, st.ax[a].b)
 		}
 	}
-	for i := range out {
-		out[i] = st.mediumC
-	}
 	for t := range st.terms {
-		line := &s.line[t]
 		for a, ax := range f.axes {
-			clear(line[a])
-			addRows(line[a], st.gridB[a], ax.n, s.amp[t][a][:s.keep[a]])
+			line := s.line[t][a]
+			clear(line)
+			addRows(line, st.gridB[a], ax.n, s.amp[t][a][:s.keep[a]])
 		}
-		weight := st.terms[t].weight
-		if f.axes[2].kind == lumped {
-			for i, x := range line[0] {
-				add(out[i*len(line[1]):][:len(line[1])], weight*x, line[1])
+	}
+	lines := s.line[:len(st.terms)]
+	last, middle := 1, 1 // the last axis with extent, and how many nodes there are on one between it and the first
+	if f.axes[2].kind != lumped {
+		last, middle = 2, len(f.nodes.x[1])
+	}
+	var sizes [mostTerms]float64
+	n := len(f.nodes.x[last])
+	for g0 := range f.nodes.x[0] {
+		for g1 := 0; g1 < middle; g1++ {
+			for t := range lines {
+				sizes[t] = st.terms[t].weight * lines[t][0][g0]
+				if last == 2 {
+					sizes[t] *= lines[t][1][g1]
+				}
 			}
-			continue
+			sumLines(out[(g0*middle+g1)*n:][:n], st.mediumC, sizes[:len(lines)], lines, last)
 		}
-		i, n := 0, len(line[2])
-		for _, x := range line[0] {
-			for _, y := range line[1] {
-				add(out[i:i+n], weight*x*y, line[2])
-				i += n
-			}
+	}
+}
+
+// sumLines fills out with a number and the sum of the terms' lines along an axis, each times its size: three at a time, for fewer rounds.
+func sumLines(out []float64, from float64, sizes []float64, lines [][3][]float64, axis int) {
+	line := func(t int) []float64 { return lines[t][axis][:len(out)] }
+	switch len(sizes) {
+	case 0:
+		for i := range out {
+			out[i] = from
+		}
+	case 1:
+		p, a := sizes[0], line(0)
+		for i := range out {
+			out[i] = from + p*a[i]
+		}
+	case 2:
+		p, q, a, b := sizes[0], sizes[1], line(0), line(1)
+		for i := range out {
+			out[i] = from + p*a[i] + q*b[i]
+		}
+	default:
+		p, q, r, a, b, c := sizes[0], sizes[1], sizes[2], line(0), line(1), line(2)
+		for i := range out {
+			out[i] = from + p*a[i] + q*b[i] + r*c[i]
+		}
+		for t := 3; t < len(sizes); t++ {
+			add(out, sizes[t], line(t))
 		}
 	}
 }
@@ -240,7 +270,7 @@ func (s *productShot) slice(axis int, x coord, node [3]int, out []float64) {
 	var v [3][maxDegrees]float64
 	for a, ax := range f.axes {
 		if a != axis && node[a] < 0 {
-			modeValues(ax, st.ax[a].b, x[a], v[a][:])
+			modeValues(ax, st.ax[a].b, x[a], v[a][:s.keep[a]])
 		}
 	}
 	var q [maxDegrees]float64
@@ -264,7 +294,7 @@ func (s *productShot) slice(axis int, x coord, node [3]int, out []float64) {
 			q[k] += w * c
 		}
 	}
-	toPolynomials(f.axes[axis].n, st.ax[axis].b, q[:], out)
+	toPolynomials(f.axes[axis].n, st.ax[axis].b, q[:s.keep[axis]], out)
 	out[0] += st.mediumC
 }
 

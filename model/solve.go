@@ -464,6 +464,7 @@ func (cs *chainStep) group(m Course, durS float64) int {
 	}
 	cs.media = append(cs.media, m)
 	if len(m.TimesS) > 1 {
+		cs.knots = slices.Grow(cs.knots, len(m.TimesS))
 		for _, t := range m.TimesS {
 			if t > 0 && t < durS {
 				cs.knots = append(cs.knots, t)
@@ -483,7 +484,8 @@ func thinned(m Course, durS float64) Course {
 	if len(m.TimesS) < 3 {
 		return m
 	}
-	out := Course{Name: m.Name, TimesS: []float64{m.TimesS[0]}, C: []float64{m.C[0]}}
+	room := len(m.C)/4 + 4 // most courses keep less
+	out := Course{Name: m.Name, TimesS: append(make([]float64, 0, room), m.TimesS[0]), C: append(make([]float64, 0, room), m.C[0])}
 	from, low, high := 0, math.Inf(-1), math.Inf(1)
 	for i := 1; i < len(m.C); i++ {
 		slope := (m.C[i] - m.C[from]) / (m.TimesS[i] - m.TimesS[from])
@@ -663,7 +665,7 @@ func (s *solver) tails(h *History, f *tensor) float64 {
 	if ax.kind == planeFull {
 		last, half = 4, float64(ax.n+1)/2
 	}
-	q := s.tmp.call.take(n)
+	q := s.tmp.call.take(last)
 	phi := s.tmp.call.take(n)
 	ax.values(1, phi, nil)
 	worst := 0.0
@@ -671,10 +673,10 @@ func (s *solver) tails(h *History, f *tensor) float64 {
 		sp := &h.Spans[i]
 		for _, from := range s.turns(i) {
 			for _, after := range []float64{1, 1.7, 3} {
-				f.at(min(sp.StartS+from+after*s.settle, sp.EndS)).(*tensorShot).only(q)
+				f.at(min(sp.StartS+from+after*s.settle, sp.EndS)).(*tensorShot).only(n-last, q)
 				sum := 0.0
-				for m := n - last; m < n; m++ {
-					sum += math.Abs(q[m] * phi[m])
+				for m, c := range q {
+					sum += math.Abs(c * phi[n-last+m])
 				}
 				worst = max(worst, sum)
 			}
@@ -739,9 +741,9 @@ func (s *solver) turns(step int) []float64 {
 		return out
 	}
 	type turn struct{ at, size float64 }
-	var all []turn
-	for _, k := range cs.knots[1:] {
-		all = append(all, turn{at: k})
+	all := make([]turn, len(cs.knots)-1)
+	for i, k := range cs.knots[1:] {
+		all[i].at = k
 	}
 	for g := range cs.media {
 		m := &cs.media[g]
