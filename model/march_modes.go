@@ -31,6 +31,8 @@ type modesMarch struct {
 	length, tau     float64         // of the last try, and its end from the start of the step, s
 	reacts          bool            // a film is not constant
 	changes         bool            // a medium changes in the step
+	wide            bool            // a face is steep in one place and flat in another: no film comes near both
+	onHeld          []bool          // by node: it lies on a face that is kept at its medium
 	face, faceWas   [3][2][]float64 // where a medium changes: what stands at the faces at the start of this step and of the step before
 	rows            [][]float64     // instants on the way, by depth
 	tolK            float64         // how far the cubics of the track may lie off between two instants, K
@@ -45,6 +47,7 @@ func newModesMarch(m *spaceMarch, tolK float64) *modesMarch {
 	for _, s := range []*[]float64{&f.c, &f.n0, &f.a, &f.na, &f.next, &f.n1, &f.e, &f.p1, &f.p2, &f.p3, &f.before, &f.bend, &f.end, &f.more, &f.x, &f.y, &f.z, &f.nodal} {
 		*s = make([]float64, m.n)
 	}
+	f.onHeld = make([]bool, m.n)
 	f.everyOther()
 	return f
 }
@@ -84,8 +87,14 @@ func (m *modesMarch) surround(skins func(*Face) *skin) {
 	}
 	m.middle(low, high)
 	m.reacts, m.changes = false, false
+	clear(m.onHeld)
 	for a := range m.skins {
 		for side, s := range m.skins[a] {
+			if s != nil && s.held {
+				for _, i := range m.spots[a][side] {
+					m.onHeld[i] = true
+				}
+			}
 			if s != nil && !s.insulated {
 				m.reacts = m.reacts || !s.held && !s.linear
 				m.changes = m.changes || len(s.course.y) > 1
@@ -111,6 +120,7 @@ var alone, one = []float64{0}, []float64{1}
 
 // linearize makes the modes of films as steep as the surfaces are tau s into the step, and brings the state into them.
 func (m *modesMarch) linearize(tau float64) {
+	m.wide = false
 	m.mem.free = m.mem.all
 	for a, ax := range m.axes {
 		if ax.n == 1 {
@@ -168,7 +178,8 @@ func (a *spaceAxis) modes(mem *slab, alpha float64, films [2]float64) (decay, to
 const leastSteep = 0.55
 
 // steepness is how steep the film of a face is to be now, W/(m²·K): in the middle of the slopes of the flux on it, so that as little as
-// possible is left over where it is steepest, mostly at an edge, and where it is flattest.
+// possible is left over where it is steepest, mostly at an edge, and where it is flattest. Edges of faces that are kept at their media do not
+// count: they stay there however steep it is.
 func (m *modesMarch) steepness(a, side int, tau float64) float64 {
 	s := m.skins[a][side]
 	switch {
@@ -179,8 +190,14 @@ func (m *modesMarch) steepness(a, side int, tau float64) float64 {
 	}
 	least, most := math.Inf(1), 0.0
 	for _, i := range m.spots[a][side] {
+		if m.onHeld[i] {
+			continue
+		}
 		_, d := s.flux(m.law.temperature(m.h[i]), tau)
 		least, most = min(least, -d), max(most, -d)
+	}
+	if least < (2*leastSteep-1)*most {
+		m.wide = true
 	}
 	return max((least+most)/2, leastSteep*most)
 }
@@ -426,7 +443,7 @@ func (m *modesMarch) try(tau, d float64) float64 {
 	for i, c := range c {
 		a[i] = e[i]*c + p1[i]*n0[i]
 	}
-	if ahead := m.changes && m.lastS > 0; ahead { // what is left over goes on as it went
+	if (m.changes || m.wide) && m.lastS > 0 { // what is left over is much, and goes on as it went
 		share := d / m.lastS
 		for i, n := range n0 {
 			a[i] += p2[i] * share * (n - before[i])
