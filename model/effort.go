@@ -7,6 +7,7 @@ type effort struct {
 	more  float64 // factor on the number of nodes
 	tolK  float64 // error of a step in time, K
 	rough bool    // the second march, that the error is estimated with
+	first bool    // nothing has been marched yet: look first whether it takes too long
 	kept  int     // numbers that the track may keep; 0: no bound
 	fewer float64 // rough: share of the volumes
 	ends  []Span  // rough: the steps as they ran in the first march, so that both change surroundings at the same instants
@@ -64,7 +65,7 @@ func (s *solver) mostTries() int {
 
 // firstEffort is how finely the march is made at first, and by what the difference of the rougher march is divided.
 func (s *solver) firstEffort() (e effort, worse float64) {
-	e = effort{more: 1, tolK: 6e-3, kept: mostKept}
+	e = effort{more: 1, tolK: 6e-3, first: true, kept: mostKept}
 	switch {
 	case !s.polynomial():
 		if s.ball != nil { // far from a sphere most of the error is that of the space

@@ -90,14 +90,35 @@ func (t *fluxTable) cut(i int) {
 	}
 }
 
+// clear forgets all pieces.
+func (t *fluxTable) clear() { clear(t.pieces) }
+
 // tabulate makes the table of a medium that stays as it is.
 func (s *skin) tabulate() {
 	if len(s.course.y) > 1 {
+		s.nowS = math.NaN()
 		return
 	}
+	s.table = s.newTable()
+}
+
+// manyPlaces is from how many places on a table is cheaper than the flux itself.
+const manyPlaces = 30
+
+// seen makes ready for looks at so many places at a time.
+func (s *skin) seen(places int) {
+	if s.table == nil && s.brief == nil && s.law == nil && !s.linear && places >= manyPlaces {
+		s.brief = s.newTable()
+	}
+}
+
+// newTable makes a table without pieces.
+func (s *skin) newTable() *fluxTable {
 	of := func(c, _ float64) (w, slope float64) { return s.law(c, 0) }
 	if s.law == nil {
-		s.now = s.around(0)
+		if len(s.course.y) == 1 {
+			s.now = s.around(0)
+		}
 		of = func(c, d float64) (w, slope float64) {
 			if d == 0 {
 				return s.direct(c, &s.now), 0
@@ -113,5 +134,5 @@ func (s *skin) tabulate() {
 	if s.moist || s.law != nil {
 		width = tableMoistK
 	}
-	s.table = newFluxTable(low, width, int(math.Ceil((high-low)/width)), tableDepth, of)
+	return newFluxTable(low, width, int(math.Ceil((high-low)/width)), tableDepth, of)
 }

@@ -20,6 +20,8 @@ type marcher interface {
 	try(tau, d float64) float64
 	// accept makes the last try the state and writes it into a track, with what is needed of the way to it.
 	accept(k *track, t float64)
+	// turn takes over a corner of a course, tau s into the step, at which the slope of a medium changes.
+	turn(tau float64)
 	// keep writes the state into a track.
 	keep(k *track, t float64)
 	// firstS is a length for the first step after a change, s.
@@ -69,10 +71,11 @@ func (s *solver) march() (*History, error) {
 		s.chain, s.main = chain, fine
 		h.ErrorK = max(1e-5, fine.differs(h, rough)/worse)
 		s.tmp.rough = rough.track.data[:0]
-		if h.ErrorK <= marchGoalK || tries == s.mostTries() || len(fine.track.data) > againKept || s.wetFaces() && len(fine.track.times) > againSteps {
+		if h.ErrorK <= marchGoalK || tries == s.mostTries() || len(fine.track.data) > againKept || s.corners*fine.track.n > s.mostTurned()/4 || s.wetFaces() && len(fine.track.times) > againSteps {
 			s.warn(h)
 			return h, nil
 		}
+		e.first = false
 		by := h.ErrorK / marchGoalK
 		if s.polynomial() {
 			e.more *= min(1.3, 1+0.1*by)
@@ -106,6 +109,9 @@ func (s *solver) marchOnce(e effort) (*History, *marched) {
 	h.body = f.body
 	h.field = f
 	s.main, s.chain = f, nil
+	if e.first && s.tooMany(f.track.n) {
+		return nil, nil
+	}
 	t := 0.0
 	for i := range s.steps {
 		span := Span{Step: &s.steps[i], StartS: t, Method: Marched}
@@ -171,6 +177,29 @@ func (s *solver) outside(low, high float64) {
 // course of hundreds of corners. What is left is stated.
 const mostKept, againKept, againSteps = 4e7, 1e7, 4000
 
+// mostTurned is how many nodes times corners of courses a march may take: about eight seconds, or what can be kept. One with more than a
+// quarter of it is not made again.
+func (s *solver) mostTurned() int {
+	switch {
+	case s.ball != nil && s.front:
+		return 1_500_000
+	case s.ball != nil:
+		return 300_000
+	case s.used < 2:
+		return 2_000_000
+	case s.front && s.used == 2:
+		return 2_500_000
+	case s.front:
+		return 6_000_000
+	case s.wetFaces(), s.sharp[0], s.sharp[1], s.sharp[2]:
+		return 3_500_000
+	}
+	return 8_000_000
+}
+
+// manyCorners is from how many corners on it is they that make a march long, and not the food or its surface.
+const manyCorners = 100
+
 // leastStepS is the shortest step of a march, s: one that cannot be solved is not made shorter than this.
 const leastStepS = 1e-7
 
@@ -178,6 +207,38 @@ const leastStepS = 1e-7
 func (s *solver) tooFast(st *Step) {
 	s.refused.Add(cell.Error{At: st.At, Field: "Step", Typed: st.Name, Msg: "changes so fast at the surface that it takes more steps than can be kept",
 		Hint: "look at the temperatures and the sizes of the product, or use film with a coefficient that stands for everything"})
+}
+
+// tooMany refuses a chain whose courses have more corners than a body of so many nodes can be marched through.
+func (s *solver) tooMany(nodes int) bool {
+	s.corners = 0
+	most, at := 0, 0
+	for i := range s.steps {
+		cs := chainStep{knots: []float64{0}}
+		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
+			cs.follow(e, s.steps[i].DurationS)
+		}
+		n := len(cs.knots) - 1
+		if s.corners += n; n > most {
+			most, at = n, i
+		}
+	}
+	if s.corners*nodes <= s.mostTurned() {
+		return false
+	}
+	s.tooLong(&s.steps[at], s.corners, s.mostTurned()/nodes)
+	return true
+}
+
+// tooLong refuses a step for the corners of its courses; most is how many the chain may have, 0 where nobody knows.
+func (s *solver) tooLong(st *Step, corners, most int) {
+	could := "fewer"
+	if most > 0 {
+		could = fmt.Sprintf("about %d", most)
+	}
+	s.refused.Add(cell.Error{At: st.At, Field: "Step", Typed: st.Name,
+		Msg:  fmt.Sprintf("the rows of the courses change their slope %d times in the chain of %s, and a %s of this size can be calculated through %s such changes", corners, s.product.Name, s.product.Shape.Name, could),
+		Hint: "leave out rows of the course in sheet Courses, such as all but every second or fifth one, but not its highest and lowest; or end it with the step"})
 }
 
 // marchStep runs one step into the track.
@@ -209,7 +270,7 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 		made[e] = k
 		worn = append(worn, wornSkin{k, face})
 		if !e.Surface.NoMedium {
-			cs.group(own.Medium, st.DurationS)
+			cs.follow(&own, st.DurationS)
 		}
 		return k
 	}
@@ -233,6 +294,8 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 	f.state.begin(0)
 	f.state.keep(f.track, span.StartS)
 	tau, d := 0.0, min(f.state.firstS(), st.DurationS/8)
+	// Steps end at the corners of courses. In many of them both marches could go from one to the next at a stride and be alike, however far off:
+	// the finer one takes two.
 	for next := 1; tau < cs.durS; {
 		for next < len(cs.knots) && cs.knots[next] <= tau {
 			next++
@@ -242,6 +305,9 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 			end = min(end, cs.knots[next])
 		}
 		use := d
+		if !e.rough && len(cs.knots) > 1 && tau == cs.knots[next-1] {
+			use = min(use, (end-tau)/2)
+		}
 		if rest := end - tau; use >= rest*(1-1e-9) {
 			use = rest
 		} else if use > rest/2 {
@@ -264,8 +330,15 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 			tau = end
 		}
 		f.state.accept(f.track, span.StartS+tau)
+		if tau == end && tau < cs.durS {
+			f.state.turn(tau)
+		}
 		if e.kept > 0 && len(f.track.data) > e.kept {
-			s.tooFast(st)
+			if n := len(cs.knots) - 1; n > manyCorners {
+				s.tooLong(st, n, 0)
+			} else {
+				s.tooFast(st)
+			}
 			return cs
 		}
 		if grow := max(0.2, min(2.5, 0.9*math.Cbrt(tolK/err))); grow >= 1 {

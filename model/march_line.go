@@ -517,6 +517,9 @@ func (m *lineMarch) accept(k *track, t float64) {
 	m.keep(k, t)
 }
 
+// turn does nothing: each step stands by itself.
+func (m *lineMarch) turn(float64) {}
+
 // keep writes the temperatures of the state into a track, with the slopes that the flows give them.
 func (m *lineMarch) keep(k *track, t float64) {
 	c, slope := k.add(t)

@@ -25,12 +25,17 @@ type modesMarch struct {
 	end, more       []float64     // at the nodes: the end of the last try before it was corrected, and the correction, K
 	before, bend    []float64     // what was left over at the start of the step before, and half its second slope in time, K/s³
 	savedAt         float64       // s into the step
+	turned          bool          // the step begins at a corner of a course
 	lastS           float64       // length of the step before, s; 0: there is none in these modes
 	x, y, z, nodal  []float64
-	length, tau     float64     // of the last try, and its end from the start of the step, s
-	reacts          bool        // a film is not constant
-	rows            [][]float64 // instants on the way, by depth
-	tolK            float64     // how far the cubics of the track may lie off between two instants, K
+	length, tau     float64         // of the last try, and its end from the start of the step, s
+	reacts          bool            // a film is not constant
+	changes         bool            // a medium changes in the step
+	wide            bool            // a face is steep in one place and flat in another: no film comes near both
+	onHeld          []bool          // by node: it lies on a face that is kept at its medium
+	face, faceWas   [3][2][]float64 // where a medium changes: what stands at the faces at the start of this step and of the step before
+	rows            [][]float64     // instants on the way, by depth
+	tolK            float64         // how far the cubics of the track may lie off between two instants, K
 }
 
 // keptW stands for a face that is kept at its medium, W/(m²·K): it stays within a thousandth of a degree of it soon after the start.
@@ -42,6 +47,7 @@ func newModesMarch(m *spaceMarch, tolK float64) *modesMarch {
 	for _, s := range []*[]float64{&f.c, &f.n0, &f.a, &f.na, &f.next, &f.n1, &f.e, &f.p1, &f.p2, &f.p3, &f.before, &f.bend, &f.end, &f.more, &f.x, &f.y, &f.z, &f.nodal} {
 		*s = make([]float64, m.n)
 	}
+	f.onHeld = make([]bool, m.n)
 	f.everyOther()
 	return f
 }
@@ -80,10 +86,20 @@ func (m *modesMarch) surround(skins func(*Face) *skin) {
 		}
 	}
 	m.middle(low, high)
-	m.reacts = false
+	m.reacts, m.changes = false, false
+	clear(m.onHeld)
 	for a := range m.skins {
-		for _, s := range m.skins[a] {
-			m.reacts = m.reacts || s != nil && !s.insulated && !s.held && !s.linear
+		for side, s := range m.skins[a] {
+			if s != nil && s.held {
+				for _, i := range m.spots[a][side] {
+					m.onHeld[i] = true
+				}
+			}
+			if s != nil && !s.insulated {
+				m.reacts = m.reacts || !s.held && !s.linear
+				m.changes = m.changes || len(s.course.y) > 1
+				s.seen(len(m.spots[a][side]))
+			}
 		}
 	}
 	m.linearize(0)
@@ -104,6 +120,7 @@ var alone, one = []float64{0}, []float64{1}
 
 // linearize makes the modes of films as steep as the surfaces are tau s into the step, and brings the state into them.
 func (m *modesMarch) linearize(tau float64) {
+	m.wide = false
 	m.mem.free = m.mem.all
 	for a, ax := range m.axes {
 		if ax.n == 1 {
@@ -161,7 +178,8 @@ func (a *spaceAxis) modes(mem *slab, alpha float64, films [2]float64) (decay, to
 const leastSteep = 0.55
 
 // steepness is how steep the film of a face is to be now, W/(m²·K): in the middle of the slopes of the flux on it, so that as little as
-// possible is left over where it is steepest, mostly at an edge, and where it is flattest.
+// possible is left over where it is steepest, mostly at an edge, and where it is flattest. Edges of faces that are kept at their media do not
+// count: they stay there however steep it is.
 func (m *modesMarch) steepness(a, side int, tau float64) float64 {
 	s := m.skins[a][side]
 	switch {
@@ -172,8 +190,14 @@ func (m *modesMarch) steepness(a, side int, tau float64) float64 {
 	}
 	least, most := math.Inf(1), 0.0
 	for _, i := range m.spots[a][side] {
+		if m.onHeld[i] {
+			continue
+		}
 		_, d := s.flux(m.law.temperature(m.h[i]), tau)
 		least, most = min(least, -d), max(most, -d)
+	}
+	if least < (2*leastSteep-1)*most {
+		m.wide = true
 	}
 	return max((least+most)/2, leastSteep*most)
 }
@@ -316,6 +340,62 @@ func (m *modesMarch) addFace(a, side int, at, out []float64) {
 func (m *modesMarch) begin(tau float64) {
 	m.left(m.c, m.nodal, m.n0, tau)
 	m.lastS = 0
+	m.standing(m.nodal)
+}
+
+// standing keeps what stands at the faces now, where a medium changes.
+func (m *modesMarch) standing(nodal []float64) {
+	if !m.changes {
+		return
+	}
+	m.face, m.faceWas = m.faceWas, m.face
+	for a := range m.spots {
+		for side, spots := range m.spots[a] {
+			at := m.face[a][side][:0]
+			for _, i := range spots {
+				at = append(at, nodal[i])
+			}
+			m.face[a][side] = at
+		}
+	}
+}
+
+// turn takes over a corner of a course: what was left over before it becomes what it would have been had the line after the corner begun
+// there already, so that the next step can look ahead and does not begin anew. Only what stands at the faces counts. Its bend it finds in its
+// middle. Where the line may not be followed so far, the next step is a first one.
+func (m *modesMarch) turn(tau float64) {
+	if m.lastS == 0 {
+		return
+	}
+	for a, ax := range m.axes {
+		for side, s := range m.skins[a] {
+			if s == nil || s.insulated || len(s.course.y) < 2 {
+				continue
+			}
+			c, turns, ok := s.cornerAt(tau, tau-m.lastS)
+			if !ok {
+				m.lastS = 0
+				return
+			}
+			if !turns {
+				continue
+			}
+			per := ax.face[side] / m.rhoC
+			at := m.f[:len(m.spots[a][side])]
+			if s.held {
+				by := per * m.films[a][side] * (m.law.heat(c.straight.mediumC) - m.law.heat(c.was.mediumC)) / m.rhoC
+				for k := range at {
+					at[k] = by
+				}
+			} else {
+				for k, v := range m.faceWas[a][side] {
+					at[k] = per * c.change(s, m.law.temperature(v*m.rhoC))
+				}
+			}
+			m.addFace(a, side, at, m.before)
+			m.turned = true
+		}
+	}
 }
 
 // phis fills what is left of the modes and the functions φ1, φ2 and φ3 of the scheme, times d, for a time d after the start of a step.
@@ -359,16 +439,27 @@ func (m *modesMarch) try(tau, d float64) float64 {
 	c, n := m.c, len(m.c)
 	e, p1, p2, p3 := m.e[:n], m.p1[:n], m.p2[:n], m.p3[:n]
 	n0, na, n1, a, next, z := m.n0[:n], m.na[:n], m.n1[:n], m.a[:n], m.next[:n], m.z[:n]
+	before, bend := m.before[:n], m.bend[:n]
 	for i, c := range c {
 		a[i] = e[i]*c + p1[i]*n0[i]
 	}
-	m.left(a, m.nodal, na, tau+d)
-	for i, a := range a {
-		next[i] = a + p2[i]*(na[i]-n0[i])
+	if (m.changes || m.wide) && m.lastS > 0 { // what is left over is much, and goes on as it went
+		share := d / m.lastS
+		for i, n := range n0 {
+			a[i] += p2[i] * share * (n - before[i])
+		}
+		m.left(a, m.nodal, na, tau+d)
+		for i, a := range a {
+			next[i] = a + p2[i]*(na[i]-n0[i]-share*(n0[i]-before[i]))
+		}
+	} else {
+		m.left(a, m.nodal, na, tau+d)
+		for i, a := range a {
+			next[i] = a + p2[i]*(na[i]-n0[i])
+		}
 	}
 	m.left(next, m.end, n1, tau+d)
-	before, bend := m.before[:n], m.bend[:n]
-	if m.lastS > 0 {
+	if m.lastS > 0 && !m.turned {
 		perD, perLast, perBoth := 1/d, 1/m.lastS, 1/(d+m.lastS)
 		for i, n := range n1 {
 			bend[i] = ((n-n0[i])*perD - (n0[i]-before[i])*perLast) * perBoth
@@ -474,7 +565,8 @@ func (m *modesMarch) accept(k *track, t float64) {
 	copy(slope, end[n:])
 	m.c, m.next = m.next, m.c
 	m.before, m.n0, m.n1 = m.n0, m.n1, m.before
-	m.lastS = m.length
+	m.lastS, m.turned = m.length, false
+	m.standing(m.end)
 	if m.reacts {
 		if m.leave(); m.drifts(m.tau) {
 			m.linearize(m.tau)

@@ -353,6 +353,9 @@ func (m *spaceMarch) accept(k *track, t float64) {
 	m.keep(k, t)
 }
 
+// turn does nothing: each step stands by itself.
+func (m *spaceMarch) turn(float64) {}
+
 func (m *spaceMarch) keep(k *track, t float64) {
 	c, slope := k.add(t)
 	if m.ice != nil {

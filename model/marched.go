@@ -192,9 +192,7 @@ func (f *marched) differs(h *History, rough *marched) float64 {
 		grow = 1.1
 	}
 	for i := range h.Spans {
-		sp := &h.Spans[i]
-		for tau := h.settle; ; tau *= grow {
-			t := min(sp.StartS+tau, sp.EndS)
+		for _, t := range h.compared(i, grow) {
 			f.track.all(f.track.find(t), mine)
 			rough.track.all(rough.track.find(min(t, end)), other)
 			onto(other, there)
@@ -203,12 +201,34 @@ func (f *marched) differs(h *History, rough *marched) float64 {
 					worst = d
 				}
 			}
-			if t == sp.EndS {
-				break
-			}
 		}
 	}
 	return worst
+}
+
+// comparedCorners is how many corners of courses two marches of a step are compared after.
+const comparedCorners = 60
+
+// compared gives the instants of a span at which two marches are compared: ever further apart by a factor from settle on, and a little after
+// corners of courses, where a cubic follows least.
+func (h *History) compared(span int, grow float64) (times []float64) {
+	sp, knots := &h.Spans[span], h.knots[span]
+	for tau := h.settle; ; tau *= grow {
+		t := min(sp.StartS+tau, sp.EndS)
+		times = append(times, t)
+		if t == sp.EndS {
+			break
+		}
+	}
+	if len(knots) < 2 {
+		return times
+	}
+	for k, every := 1, 1+len(knots)/comparedCorners; k+1 < len(knots); k += every {
+		if t := sp.StartS + knots[k] + (knots[k+1]-knots[k])/5; t > times[0] && t < sp.EndS {
+			times = append(times, t)
+		}
+	}
+	return rising(times)
 }
 
 // atFront tells whether the front of ice stands beside node j in one march or between the two marches.

@@ -160,3 +160,22 @@ func (c *cursor) to(at float64) float64 {
 	f := (at - c.x[i-1]) / (c.x[i] - c.x[i-1])
 	return c.y[i-1] + f*(c.y[i]-c.y[i-1])
 }
+
+// back is the value at a time before from on the straight line that begins there.
+func (c *cursor) back(from, at float64) float64 {
+	switch len(c.x) {
+	case 0:
+		if len(c.y) == 0 {
+			return math.NaN()
+		}
+		return c.y[0]
+	case 1:
+		return c.y[0]
+	}
+	here := c.to(from)
+	i := sort.SearchFloat64s(c.x, math.Nextafter(from, math.Inf(1)))
+	if i == 0 || i == len(c.x) {
+		return here
+	}
+	return here + (c.y[i]-c.y[i-1])/(c.x[i]-c.x[i-1])*(at-from)
+}

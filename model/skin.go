@@ -31,8 +31,10 @@ type skin struct {
 	given     bool     // the food's activity is known
 
 	law   func(surfaceC, tauS float64) (w, slope float64) // stands for everything (tests)
-	now   around                                          // of a medium that stays as it is
-	table *fluxTable                                      // of a medium that stays as it is; nil otherwise
+	now   around                                          // of a medium that stays as it is; else of the last look, nowS s into the step
+	nowS  float64
+	table *fluxTable // of a medium that stays as it is; nil otherwise
+	brief *fluxTable // of one that changes, at the last look: where many places are looked at; nil otherwise
 	exp   *Exposure
 	film  filmCase
 }
@@ -174,12 +176,16 @@ func (e *Exposure) innerFilm(c *filmCase) bool {
 
 // around gives the surroundings tau s after the start of the step.
 func (s *skin) around(tau float64) around {
-	var a around
-	a.mediumC = s.mediumC(tau)
+	return s.surroundings(s.mediumC(tau), at(&s.humidity, tau))
+}
+
+// surroundings gives those of a temperature, °C, and a relative humidity, %.
+func (s *skin) surroundings(mediumC, rhPc float64) around {
+	a := around{mediumC: mediumC}
 	if !s.moist {
 		return a
 	}
-	a.vapourPa = vapourPa(a.mediumC, at(&s.humidity, tau), s.totalPa)
+	a.vapourPa = vapourPa(a.mediumC, rhPc, s.totalPa)
 	a.ratio = humidityRatio(a.vapourPa, s.totalPa)
 	a.massWK = 1 / (moistCp(a.ratio) * lewisFactor)
 	if s.steamAir {
@@ -304,12 +310,27 @@ func (s *skin) through(surfaceC float64, a *around) (outerC, w float64) {
 }
 
 // flux gives the heat that flows into the food, W/m², and its slope by the surface temperature, W/(m²·K), tau s after the start of the
-// step. Where the medium stays as it is both come from a table of cubics.
+// step. Where the medium stays as it is, or many places are looked at, both come from a table of cubics.
 func (s *skin) flux(surfaceC, tau float64) (w, slope float64) {
-	if s.table != nil {
+	switch {
+	case s.table != nil:
 		return s.table.at(surfaceC)
+	case s.brief != nil:
+		s.look(tau)
+		return s.brief.at(surfaceC)
 	}
 	return s.exact(surfaceC, tau)
+}
+
+// look takes the surroundings tau s after the start of the step, unless the last look was there.
+func (s *skin) look(tau float64) {
+	if tau == s.nowS {
+		return
+	}
+	s.now, s.nowS = s.around(tau), tau
+	if s.brief != nil {
+		s.brief.clear()
+	}
 }
 
 // exact is flux without a table.
@@ -321,11 +342,39 @@ func (s *skin) exact(surfaceC, tau float64) (w, slope float64) {
 		return 0, 0
 	case s.linear:
 		return s.totalW * (s.mediumC(tau) - surfaceC), -s.totalW
-	case s.table != nil:
-		return s.sloped(surfaceC, &s.now, slopeK)
+	case s.table == nil:
+		s.look(tau)
 	}
-	a := s.around(tau)
-	return s.sloped(surfaceC, &a, slopeK)
+	return s.sloped(surfaceC, &s.now, slopeK)
+}
+
+// corner is what stands around a skin a while before a course of it changes its slope: as it was, and as if the line after the corner had
+// begun there already.
+type corner struct{ was, straight around }
+
+// mostBackK is how far the line after a corner may lead from what was, K, and mostBackPc in % of humidity: beyond, it says nothing of the food.
+const mostBackK, mostBackPc = 25, 20
+
+// cornerAt gives the corner at tau, seen from before, both s into the step; ok tells whether the line after it may be followed so far.
+func (s *skin) cornerAt(tau, before float64) (c corner, turns, ok bool) {
+	was, wasPc := s.mediumC(before), at(&s.humidity, before)
+	back, backPc := s.course.back(tau, before), s.humidity.back(tau, before)
+	byK, byPc := math.Abs(back-was), math.Abs(backPc-wasPc)
+	if !s.moist {
+		byPc = 0
+	}
+	if byK > mostBackK || byPc > mostBackPc {
+		return c, true, false
+	}
+	return corner{s.surroundings(was, wasPc), s.surroundings(back, max(0, min(100, backPc)))}, byK > 1e-9 || byPc > 1e-9, true
+}
+
+// change is by how much more heat flows into the food after a corner, W/m².
+func (c *corner) change(s *skin, surfaceC float64) float64 {
+	if s.linear {
+		return s.totalW * (c.straight.mediumC - c.was.mediumC)
+	}
+	return s.direct(surfaceC, &c.straight) - s.direct(surfaceC, &c.was)
 }
 
 // slopeK is half of the difference that a slope is taken over, K.

@@ -77,6 +77,7 @@ type solver struct {
 	refused cell.Errors // found while solving
 	laws    []*law      // of the foods, by layer; made when a march needs them
 	front   bool        // marched, and any place may freeze or melt
+	corners int         // marched: how often the media change their slope in the chain
 }
 
 // layOut finds the axes of the product.
@@ -463,16 +464,31 @@ func (cs *chainStep) group(m Course, durS float64) int {
 		}
 	}
 	cs.media = append(cs.media, m)
-	if len(m.TimesS) > 1 {
-		cs.knots = slices.Grow(cs.knots, len(m.TimesS))
-		for _, t := range m.TimesS {
-			if t > 0 && t < durS {
-				cs.knots = append(cs.knots, t)
-			}
-		}
-		cs.knots = rising(cs.knots)
-	}
+	cs.turns(&m, durS)
 	return len(cs.media) - 1
+}
+
+// follow adds the instants at which the medium of an exposure changes its slope, in temperature or, where moisture may count, in humidity.
+func (cs *chainStep) follow(e *Exposure, durS float64) {
+	m := &e.Medium
+	cs.group(*m, durS)
+	if m.RH != nil && e.reacts() {
+		rh := thinned(Course{TimesS: m.TimesS, C: m.RH}, durS)
+		cs.turns(&rh, durS)
+	}
+}
+
+// turns adds the instants at which a course changes its slope.
+func (cs *chainStep) turns(m *Course, durS float64) {
+	if len(m.TimesS) < 2 {
+		return
+	}
+	for _, t := range m.TimesS {
+		if t > 0 && t < durS {
+			cs.knots = append(cs.knots, t)
+		}
+	}
+	cs.knots = rising(cs.knots)
 }
 
 // thinK is how far a course may be moved by leaving points out, K. No place in the food can move further.
