@@ -151,6 +151,13 @@ func TestRecorded(t *testing.T) {
 		{"frozen through a gap", Limit{Kind: FreezeHold, FromC: c(-5), TimeS: min_(10), ToC: c(-18), SecondS: min_(45)}, "freeze 0-100", "0:0 10:-6 20:-10 30:-19 40:-20 | 60:-20 90:-20 100:-20", nil, CannotTell, "from 40 min to 1 h 00 min"},
 		{"frozen, gap and all", Limit{Kind: FreezeHold, FromC: c(-5), TimeS: min_(10), ToC: c(-18), SecondS: min_(45)}, "freeze 0-100", "0:0 10:-6 20:-10 30:-19 40:-20 | 60:-20 90:-20 100:-20", between(-30, -19), Met, ""},
 
+		{"a band that was passed before the step or in it", Limit{Kind: Outside, FromC: c(16), ToC: c(31), Stages: st(model.Store)}, "cool 0-3, store 3-60", "0:8 5:32 60:33", nil, CannotTell, "between two readings"},
+		{"a rise before the step or in it", Limit{Kind: Falling, Stages: st(model.Store), AllowanceK: c(2)}, "cool 0-12, store 12-60", "0:20 10:20 15:40 60:39", nil, CannotTell, "between two readings"},
+		{"a clock that may start a reading later within the error", cooling(), "cool 0-200", "0:80 30:59.7 60:40 155:25 185:20.2 200:10", func(r *model.Recording) { r.ErrorK = 0.5 }, CannotTell, "between two readings"},
+		{"two heatings, of which the first may be over in the gap and the second starts late", Limit{Kind: HeatWithin, FromC: c(35), ToC: c(56), TimeS: min_(36), Clock: crossing}, "cook 0-200, reheat 200-260",
+			"40:36 50:30 60:30 70:30 80:30 90:40 100:57 110:57 120:40 130:20 140:20 150:20 160:20 170:20 180:20 190:20 200:20 210:36 220:40 230:45 240:50 250:57 260:57", nil, CannotTell, "nothing was recorded before 40 min"},
+		{"a gap that may hold a higher peak, or none", cooling(), "cool 0-200", "0:80 20:50 40:40 60:30 | 110:30 130:20 200:10", between(2, 85), CannotTell, "between two readings"},
+
 		{"a spike that decides", below(8), "store 0-40", "0:4 10:4 20:50? 30:4 40:4", nil, CannotTell, "the reading of 50 °C at 20 min jumps faster"},
 		{"a spike that does not", below(60), "store 0-40", "0:4 10:4 20:50? 30:4 40:4", nil, Met, ""},
 		{"two spikes, of which one decides", below(40), "store 0-60", "0:4 10:4 20:30? 30:4 40:50? 50:4 60:4", nil, CannotTell, "the reading of 50 °C at 40 min jumps faster"},
@@ -245,7 +252,7 @@ func TestGapInRecordedSurroundings(t *testing.T) {
 		{"warm air since", "slowest point", "0:10 30:50 60:70 65:72 70:73 80:71 | 90:60 120:40", "0:180 60:180 60.5:4 85:4 86:90 90:90 90.5:4 300:4", 4, 90},
 		{"while it is heated", "slowest point", "0:10 10:20 20:40 | 30:50 120:70", medium, 40, 180},
 		{"before it is known to warm", "slowest point", "0:10 10:10 20:10 | 30:50 120:70", medium, 10, 180},
-		{"after a second heating", "slowest point", "0:10 30:50 60:70 65:70.5 66:71 69:70.6 80:70 | 90:60 120:40", "0:180 60:180 60.5:4 65:4 66:180 69:180 70:4 300:4", 4, 180},
+		{"after a second heating", "slowest point", "0:10 30:50 60:70 65:70.5 66:71 69:70.6 80:69 | 90:60 120:40", "0:180 60:180 60.5:4 65:4 66:180 69:180 70:4 300:4", 4, 180},
 	} {
 		t.Run(x.name, func(t *testing.T) {
 			r := logged(t, "cook 0-60, cool 60-120", x.course)
@@ -261,6 +268,46 @@ func TestGapInRecordedSurroundings(t *testing.T) {
 			}
 		})
 	}
+}
+
+// TestGapWithoutSurroundings bounds a gap by what is known of the medium and, where the food may still hold heat, by what was read before.
+func TestGapWithoutSurroundings(t *testing.T) {
+	for _, x := range []struct {
+		name, place  string
+		known        bool
+		lo, hi       float64
+		edgeLo, edge float64
+	}{
+		{"the hottest place in known air", "slowest point", true, 2, 60, 2, 40},
+		{"any place in known air", "probe", true, 2, 80, 2, 80},
+		{"unknown air", "slowest point", false, 40, 80, anyLowC, anyHighC},
+	} {
+		r := logged(t, "cool 0-300", "0:80 30:60 | 60:50 90:40")
+		if r.Name = x.place; x.known {
+			r.LowC, r.HighC = 2, 12
+		}
+		u := newTube(r, nil)
+		if len(u.gaps) != 2 || u.gaps[0].lo != x.lo || u.gaps[0].hi != x.hi || u.gaps[1].lo != x.edgeLo || u.gaps[1].hi != x.edge {
+			t.Errorf("%s: %+v", x.name, u.gaps)
+		}
+	}
+}
+
+// TestCourseAtTheEndOfAStep: where a step ends between two readings, what ends there and what begins there each have their own choice.
+func TestCourseAtTheEndOfAStep(t *testing.T) {
+	u := newTube(logged(t, "cook 0-12, cool 12-30", "0:70 10:60 15:40 30:20"), nil)
+	p := u.course(&path{}, func(i int, lo, hi float64, _ bool) choice {
+		if u.t[i] < 720 {
+			return at(hi)
+		}
+		return at(lo)
+	}, allGaps)
+	before, after := p.in(interval{0, 720}), p.in(interval{720, 1800})
+	if n := len(before.t) - 1; before.c[n] != 60 || before.t[n] != 720 || after.t[0] != 720 || after.c[0] != 40 {
+		t.Errorf("%v and %v", before, after)
+	}
+	closeTo(t, "halfway in the cook", c(before.value(300)), 70, 0)
+	closeTo(t, "halfway in the chill", c(after.value(1200)), 20, 0)
 }
 
 // sorted puts the readings of a trace in order.
