@@ -52,6 +52,7 @@ type Against struct {
 	Place     model.Place
 	PlaceName string
 	TimesS, C []float64 // the prediction
+	Air       bool      // made with recorded surroundings of a step, where there were any
 	Readings  int       // that were compared
 	BiasK     float64   // mean of record minus prediction
 	RMSK      float64
@@ -159,7 +160,11 @@ func (m *Measured) compared(h *Head) []string {
 		return nil
 	}
 	signed := func(k float64) string { return signed(k, func(k float64) string { return h.difference(k, nearest) }) }
-	out := []string{say("against", a.PlaceName, a.Readings, signed(a.BiasK), h.difference(a.RMSK, up))}
+	key := "against"
+	if a.Air {
+		key = "against air"
+	}
+	out := []string{say(key, a.PlaceName, a.Readings, signed(a.BiasK), h.difference(a.RMSK, up))}
 	switch {
 	case a.ColderK > 0 && a.WarmerK > 0:
 		out = append(out, say("against both", h.difference(a.ColderK, up), duration(a.ColderS, nearest), h.difference(a.WarmerK, up), duration(a.WarmerS, nearest)))

@@ -125,8 +125,9 @@ func (r *runner) calculate(p *workbook.Product) (*report.Product, error) {
 	for i, e := range out.History.Warnings {
 		out.History.Warnings[i] = p.AsTyped(r.plan.Locate(e))
 	}
-	r.measure(p, out)
-	out.Deviation = r.deviate(p, out)
+	var media []*medium
+	out.Deviation, media = r.deviate(p, out)
+	r.measure(p, out, media)
 	out.Samples = out.History.Sample(r.head.EveryS)
 	out.Lever = r.lever(p, out)
 	return out, nil

@@ -23,19 +23,20 @@ type medium struct {
 	ended     bool           // somebody wrote down when the step ended, so that it does not end at a temperature
 	courses   []model.Course // as read, then the ends that the accuracy of the instrument, the simplification and each gap allow
 	manyGaps  bool           // more than were tried at every combination of their ends
+	timesS, c []float64      // the readings, s from the start of the step
+	errorK    float64        // by how much they may be off
 }
 
 // gapsTried is how many gaps of a medium are tried at every combination of their ends, mostRuns how many runs in all.
 const gapsTried, mostRuns = 3, 64
 
 // deviate calculates a product with the surroundings that were recorded. It is nil if none were, or none could be used; the problems are
-// told either way.
-func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Deviation {
+// told either way. The media are those that could be used.
+func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.Deviation, media []*medium) {
 	if r.logs == nil {
-		return nil
+		return nil, nil
 	}
-	v := &report.Deviation{WithinK: simplifyK}
-	var media []*medium
+	v = &report.Deviation{WithinK: simplifyK}
 	for i := range r.plan.Records {
 		rec := &r.plan.Records[i]
 		if !rec.Sound || rec.Of != workbook.OfMedium || !slices.ContainsFunc(rec.Products, func(q *workbook.Product) bool { return q.Name == p.Name }) {
@@ -53,11 +54,11 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 		media = append(media, air)
 	}
 	if len(v.Records) == 0 {
-		return nil
+		return nil, nil
 	}
 	if len(media) == 0 {
 		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "the record could not be used"}
-		return v
+		return v, nil
 	}
 	run := func(which []int) (*report.Product, error) {
 		q := *p
@@ -80,7 +81,7 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 	after, err := run(make([]int, len(media)))
 	if err != nil {
 		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "it cannot be calculated: " + oneLine(err)}
-		return v
+		return v, media
 	}
 	v.History = after.History
 	findings := after.Judgement.Findings
@@ -88,7 +89,7 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 		bound, err := run(which)
 		if err != nil {
 			v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "its bounds cannot be calculated: " + oneLine(err)}
-			return v
+			return v, media
 		}
 		for i := range findings {
 			if i < len(bound.Judgement.Findings) && rules.Worse(&bound.Judgement.Findings[i], &findings[i]) {
@@ -107,7 +108,28 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 		findings[i].Run = ""
 	}
 	v.Judgement = rules.Conclude(findings, r.plan.Groups)
-	return v
+	return v, media
+}
+
+// traceOf is what the surroundings of all steps of a record were, on its clock; nil if they were not recorded throughout, or by an
+// instrument that is less exact than the probe.
+func traceOf(media []*medium, re *model.Recording, first int) *model.Trace {
+	tr := &model.Trace{Point: model.Point{Name: "medium"}}
+	for i, sp := range re.Spans {
+		k := slices.IndexFunc(media, func(m *medium) bool { return m.step == first+i })
+		if k < 0 || media[k].errorK > re.ErrorK+1e-9 || media[k].durationS < sp.EndS-sp.StartS-1 {
+			return nil
+		}
+		for n, t := range media[k].timesS {
+			if at := sp.StartS + max(t, 0); at <= sp.EndS && (len(tr.TimesS) == 0 || at > tr.TimesS[len(tr.TimesS)-1]) {
+				tr.TimesS, tr.C = append(tr.TimesS, at), append(tr.C, media[k].c[n])
+			}
+		}
+	}
+	if len(tr.TimesS) == 0 {
+		return nil
+	}
+	return tr
 }
 
 // ends are the runs beside the one as read: every combination of the ends of the media, as far as there are not too many.
@@ -160,6 +182,7 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 		return nil, fault(rec, "What it measured", rec.Measured, st.Name+" has no surroundings with a temperature", "name another step")
 	}
 	from, to := 0.0, 0.0
+	begun := len(rec.Starts) == 0
 	for _, s := range rec.Starts {
 		t, wrong := startOf(rec, log, &s)
 		if wrong != nil {
@@ -174,10 +197,13 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 		}
 		switch {
 		case i == air.step:
-			from = t
+			from, begun = t, true
 		case i == air.step+1:
 			to, air.ended = t, true
 		}
+	}
+	if !begun {
+		return nil, fault(rec, "Starts at", "", "does not say when "+st.Name+" began", "write it: "+st.Name+" 11:20")
 	}
 	air.durationS = lengths[air.step]
 	if air.ended {
@@ -208,6 +234,10 @@ func (air *medium) fill(log *record.Log, from, to, errorK float64, m *report.Mea
 	}
 	m.Readings, m.Before, m.After = j-i+1, i, len(log.TimesS)-1-j
 	lowest, highest := slices.Min(log.C), slices.Max(log.C)
+	air.errorK = errorK
+	for k := i; k <= j; k++ {
+		air.timesS, air.c = append(air.timesS, log.TimesS[k]-from), append(air.c, log.C[k])
+	}
 	gaps := map[int]int{} // by the reading before it: its number
 	for _, g := range log.Gaps {
 		if g >= i && g < j {

@@ -202,7 +202,7 @@ func aboutLimits(plan *workbook.Plan) cell.Errors {
 
 // judgedAlone is a record as a product of its own.
 func (r *runner) judgedAlone(p *workbook.Product) (*report.Product, error) {
-	m := r.measured(r.alone, p, nil)
+	m := r.measured(r.alone, p, nil, nil)
 	if m.History == nil {
 		return nil, m.Problems
 	}

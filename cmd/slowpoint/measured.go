@@ -211,15 +211,15 @@ func shown(log *record.Log, s float64) string {
 	}
 }
 
-// measure judges the records of a product beside its prediction.
-func (r *runner) measure(p *workbook.Product, out *report.Product) {
+// measure judges the records of a product beside its prediction; media are the surroundings that were recorded too.
+func (r *runner) measure(p *workbook.Product, out *report.Product, media []*medium) {
 	if r.logs == nil {
 		return
 	}
 	for i := range r.plan.Records {
 		rec := &r.plan.Records[i]
 		if rec.Sound && rec.Of.Food() && rec.Products[0].Name == p.Name {
-			out.Measured = append(out.Measured, *r.measured(rec, p, out))
+			out.Measured = append(out.Measured, *r.measured(rec, p, out, media))
 		}
 	}
 }
@@ -264,7 +264,7 @@ func errorOf(rec *workbook.Record, log *record.Log) float64 {
 }
 
 // measured reads, judges and compares one record. out is the prediction; nil if there is none.
-func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report.Product) *report.Measured {
+func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report.Product, media []*medium) *report.Measured {
 	m := describe(rec)
 	log, problems := r.logs.read[rec]()
 	m.Problems = problems
@@ -286,6 +286,7 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 		m.Problems.Add(*fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it"))
 		return m
 	}
+	re.Medium = traceOf(media, re, way.first)
 	findings, err := rules.FindRecorded(r.plan.Limits, rules.Recorded{Product: p.Name, Family: p.Family, Recording: re})
 	if err != nil {
 		m.Problems.Add(cell.Error{At: rec.At, Msg: "The record cannot be judged: " + err.Error()})
@@ -303,7 +304,7 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 	}
 	m.Judgement = rules.Conclude(findings, r.plan.Groups)
 	if out != nil {
-		r.compare(rec, p, out, way, re, m)
+		r.compare(rec, p, out, way, re, media, m)
 	}
 	return m
 }
@@ -370,7 +371,7 @@ func placeIn(log *record.Log, re *model.Recording, lines []int32, t float64) cel
 const mostCompared = 2000
 
 // compare holds a record against the prediction with the steps as long as they were.
-func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.Product, way *ran, re *model.Recording, m *report.Measured) {
+func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.Product, way *ran, re *model.Recording, media []*medium, m *report.Measured) {
 	if rec.Of == workbook.AtOther {
 		return
 	}
@@ -386,12 +387,18 @@ func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.
 		steps[way.first+i].DurationS, steps[way.first+i].UntilC = way.startS[i+1]-way.startS[i], nil
 	}
 	steps = steps[:way.first+len(way.startS)-1]
+	a := &report.Against{Place: rec.Place.Place, PlaceName: rec.Measured}
+	for _, air := range media {
+		if air.step < len(steps) && air.durationS > steps[air.step].DurationS-1 {
+			steps[air.step].Medium, steps[air.step].Measured, a.Air = air.courses[0], true, true
+			steps[air.step].DurationS = min(steps[air.step].DurationS, air.durationS)
+		}
+	}
 	h, err := model.Solve(p.Product, steps, model.Options{})
 	if err != nil {
 		m.Problems.Add(cell.Error{At: rec.At, Level: cell.Note, Msg: "The record was not compared with the prediction, which cannot be made for steps as long as they were: " + oneLine(err)})
 		return
 	}
-	a := &report.Against{Place: rec.Place.Place, PlaceName: rec.Measured}
 	slowest := slowestPlace(h)
 	switch rec.Of {
 	case workbook.AtSlowest:

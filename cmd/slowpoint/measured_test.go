@@ -13,6 +13,7 @@ import (
 	"slowpoint/cmd/slowpoint/record"
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
+	"slowpoint/report"
 	"slowpoint/rules"
 )
 
@@ -134,7 +135,7 @@ func TestDeviateAsPlanned(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		v := r.deviate(p, out)
+		v, _ := r.deviate(p, out)
 		if v == nil || len(v.Judgement.Findings) != 1 {
 			t.Fatalf("no deviation: %+v", v)
 		}
@@ -172,7 +173,7 @@ func TestDeviateGap(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		v := r.deviate(p, out)
+		v, _ := r.deviate(p, out)
 		return *v.Judgement.Findings[0].MarginK
 	}
 	whole, gap := margin(0, 0), margin(30, 90)
@@ -191,7 +192,7 @@ func TestDeviateRefuses(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	v := r.deviate(p, out)
+	v, _ := r.deviate(p, out)
 	if v.Judgement.Verdict != rules.CannotTell || v.Records[0].Problems.Faults() != 1 || !strings.Contains(v.Records[0].Problems[0].Msg, "ends at 1 h after the first reading, and bath needs it up to 2 h") {
 		t.Errorf("%v: %v", v.Judgement.Verdict, v.Records[0].Problems)
 	}
@@ -214,7 +215,7 @@ func TestAgainst(t *testing.T) {
 		r.plan.Records = []workbook.Record{{Name: "R", Products: []*workbook.Product{p}, File: "probe.csv", Time: "Elapsed (min)", Temperature: "Air (°C)", Measured: "probe",
 			Of: workbook.AtPoint, Place: p.Points[0], AccuracyK: &accuracy, Sound: true}}
 		r.logs, r.fit = newLogs(r.plan, dir, time.Time{}), fitting{film: off == 0}
-		r.measure(p, out)
+		r.measure(p, out, nil)
 		m := out.Measured[0]
 		if m.History == nil || m.Against == nil {
 			t.Fatal(m.Problems)
@@ -253,7 +254,7 @@ func TestFittedChangesNoVerdict(t *testing.T) {
 		r.plan.Records = []workbook.Record{{Name: "R", Products: []*workbook.Product{p}, File: "probe.csv", Time: "Elapsed (min)", Temperature: "Air (°C)", Measured: "slowest point",
 			Of: workbook.AtSlowest, Sound: true}}
 		r.logs, r.fit = newLogs(r.plan, dir, time.Time{}), f
-		r.measure(p, out)
+		r.measure(p, out, nil)
 		if f.film && len(out.Measured[0].Against.Fitted) == 0 {
 			t.Error("nothing was fitted: " + out.Measured[0].Against.NotFitted)
 		}
@@ -261,5 +262,57 @@ func TestFittedChangesNoVerdict(t *testing.T) {
 	}
 	if a, b := verdicts(fitting{}), verdicts(fitting{film: true, conductivity: true}); a != b || !strings.HasSuffix(a, "not met") {
 		t.Errorf("%s without a fit and %s with it; want a record that is not met", a, b)
+	}
+}
+
+// TestRecordedAirHelps: with a record of the air, the prediction beside a probe is that of the air as it was, and a gap of the probe is bounded by
+// what the air can have done to the food.
+func TestRecordedAirHelps(t *testing.T) {
+	judged := func(withAir bool) *report.Measured {
+		r, p := slabRunner(model.Cool, 0.04, 60, 5, 25, 2*3600, coolTo(35, 90*60)) // planned at 5 °C
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		warm := *p
+		warm.Steps = append([]model.Step(nil), p.Steps...)
+		warm.Steps[0].Medium.C = []float64{9} // it was 9 °C
+		truth, err := model.Solve(warm.Product, warm.Steps, model.Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		dir := t.TempDir()
+		var at, c []float64
+		for m := 0; m <= 120; m++ {
+			if m <= 80 || m >= 100 {
+				at, c = append(at, float64(m)), append(c, truth.At(model.Place{}, float64(m)*60))
+			}
+		}
+		logFile(t, dir, "probe.csv", at, c)
+		at, c = minutesOf(121, func(m int) float64 { return 9 + 0.01*float64(m%2) })
+		logFile(t, dir, "air.csv", at, c)
+		exact := 0.1
+		probe := workbook.Record{Name: "Probe", Products: []*workbook.Product{p}, File: "probe.csv", Time: "Elapsed (min)", Temperature: "Air (°C)", Measured: "slowest point",
+			Of: workbook.AtSlowest, AccuracyK: &exact, Sound: true}
+		air := probe
+		air.Name, air.File, air.Measured, air.Of, air.Step = "Air", "air.csv", "medium of bath", workbook.OfMedium, "bath"
+		r.plan.Records = []workbook.Record{probe}
+		if withAir {
+			r.plan.Records = append(r.plan.Records, air)
+		}
+		r.logs = newLogs(r.plan, dir, time.Time{})
+		_, media := r.deviate(p, out)
+		r.measure(p, out, media)
+		if es := out.Measured[0].Problems; es.Faults() > 0 {
+			t.Fatal(es)
+		}
+		return &out.Measured[0]
+	}
+	alone, with := judged(false), judged(true)
+	if alone.Against.Air || alone.Against.BiasK < 1 || !with.Against.Air || math.Abs(with.Against.BiasK) > 0.02 {
+		t.Errorf("the record lies %.3f K from the plan and %.3f K from the air as it was", alone.Against.BiasK, with.Against.BiasK)
+	}
+	if a, b := alone.Judgement.Findings[0], with.Judgement.Findings[0]; a.Verdict != rules.CannotTell || b.Verdict != rules.Met {
+		t.Errorf("without the air %v (%s), with it %v (%s)", a.Verdict, a.Why, b.Verdict, b.Why)
 	}
 }
