@@ -159,12 +159,16 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 	if len(st.Medium.TimesS) == 0 {
 		return nil, fault(rec, "What it measured", rec.Measured, st.Name+" has no surroundings with a temperature", "name another step")
 	}
-	from, to := 0.0, 0.0
-	for _, s := range rec.Starts {
+	from, to, known, last := 0.0, 0.0, -1, 0.0 // known: the last step up to the record's own whose beginning was written down
+	for n, s := range rec.Starts {
 		t, wrong := startOf(rec, log, &s)
 		if wrong != nil {
 			return nil, wrong
 		}
+		if n > 0 && t <= last {
+			return nil, fault(rec, "Starts at", s.Typed, "is no later than the step before it", "write the steps in their order")
+		}
+		last = t
 		i := air.step // a time without a step is that of the record's own
 		if s.Step != "" {
 			i = stepNamed(p.Steps, s.Step)
@@ -173,10 +177,18 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 			i = len(p.Steps)
 		}
 		switch {
-		case i == air.step:
-			from = t
+		case i <= air.step:
+			from, known = t, i
 		case i == air.step+1:
 			to, air.ended = t, true
+		}
+	}
+	if len(rec.Starts) > 0 {
+		if known < 0 {
+			return nil, fault(rec, "Starts at", rec.Starts[0].Typed, "does not say when "+st.Name+" began", "write when it began before it")
+		}
+		for ; known < air.step; known++ { // as long as the plan has them
+			from += lengths[known]
 		}
 	}
 	air.durationS = lengths[air.step]
@@ -184,7 +196,7 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 		air.durationS = to - from
 	}
 	to = from + air.durationS
-	last := log.TimesS[len(log.TimesS)-1]
+	last = log.TimesS[len(log.TimesS)-1]
 	reach := max(1.5*log.StepS, 1) // the course of the last reading goes on for one more
 	if to > last+reach {
 		return nil, fault(rec, "File", rec.File, fmt.Sprintf("ends at %s, and %s needs it up to %s", shown(log, last), st.Name, shown(log, to)), "write when the step began and ended in Starts at, or give the whole file")
