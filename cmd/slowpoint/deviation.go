@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"slowpoint/cmd/slowpoint/record"
 	"slowpoint/cmd/slowpoint/workbook"
@@ -84,6 +85,11 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 	}
 	v.History = after.History
 	findings := after.Judgement.Findings
+	var asRead []rules.Verdict
+	for i := range findings {
+		asRead = append(asRead, findings[i].Verdict)
+	}
+	open := slices.ContainsFunc(media, func(m *medium) bool { return len(m.courses) > 3 || m.manyGaps })
 	for _, which := range ends(media) {
 		bound, err := run(which)
 		if err != nil {
@@ -94,6 +100,11 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 			if i < len(bound.Judgement.Findings) && rules.Worse(&bound.Judgement.Findings[i], &findings[i]) {
 				findings[i] = bound.Judgement.Findings[i]
 			}
+		}
+	}
+	for i := range findings { // what may have been in a gap proves nothing
+		if f := &findings[i]; open && asRead[i] == rules.Met && f.Verdict == rules.NotMet {
+			f.Verdict, f.Why = rules.CannotTell, strings.TrimSuffix(f.Why, ".")+"; but that is at the unfavourable end of what the gaps in the record leave open, and by its readings alone it is met, so it cannot be told."
 		}
 	}
 	for _, m := range media {
@@ -204,12 +215,13 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 	if air.durationS <= 0 {
 		return nil, fault(rec, "Starts at", "", st.Name+" has no length by it", "correct it")
 	}
-	air.fill(log, from, to, errorOf(rec, log), m)
+	air.fill(log, p.Steps, from, to, errorOf(rec, log), m)
 	return air, nil
 }
 
-// fill makes the courses of the readings between two instants, s from the first.
-func (air *medium) fill(log *record.Log, from, to, errorK float64, m *report.Measured) {
+// fill makes the courses of the readings between two instants, s from the first. In a gap the medium may have been at anything between the
+// extremes of the whole record and of the surroundings that the plan has elsewhere: what stops a logger may have stopped a chiller.
+func (air *medium) fill(log *record.Log, steps []model.Step, from, to, errorK float64, m *report.Measured) {
 	i := 0
 	for i+1 < len(log.TimesS) && log.TimesS[i+1] <= from {
 		i++
@@ -220,6 +232,8 @@ func (air *medium) fill(log *record.Log, from, to, errorK float64, m *report.Mea
 	}
 	m.Readings, m.Before, m.After = j-i+1, i, len(log.TimesS)-1-j
 	lowest, highest := slices.Min(log.C), slices.Max(log.C)
+	elsewhere := elsewhere(steps, air.step)
+	lowest, highest = min(lowest, slices.Min(elsewhere)), max(highest, slices.Max(elsewhere))
 	gaps := map[int]int{} // by the reading before it: its number
 	for _, g := range log.Gaps {
 		if g >= i && g < j {
@@ -277,6 +291,25 @@ func (air *medium) fill(log *record.Log, from, to, errorK float64, m *report.Mea
 			}))
 		}
 	}
+}
+
+// elsewhere are the planned temperatures of a step's own surroundings and of those that it may come to when its equipment stops, °C: those of
+// all steps where it heats, else those of the steps that do not heat, such as a kitchen's air. Where none of these is warmer, as without a rest
+// on the way to the chiller, they are those of all steps.
+func elsewhere(steps []model.Step, i int) []float64 {
+	heats := func(k int) bool { return steps[k].Stage != nil && steps[k].Stage.Heats }
+	own := slices.Max(steps[i].Medium.C)
+	var mild, all []float64
+	for k := range steps {
+		all = append(all, steps[k].Medium.C...)
+		if !heats(k) {
+			mild = append(mild, steps[k].Medium.C...)
+		}
+	}
+	if heats(i) || slices.Max(mild) <= own {
+		return all
+	}
+	return mild
 }
 
 // simplified drops the rows of a course that straight lines between the others pass within simplifyK (Ramer, Douglas and Peucker's method).
