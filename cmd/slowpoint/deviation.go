@@ -149,7 +149,7 @@ func ends(media []*medium) [][]int {
 func (r *runner) surroundings(rec *workbook.Record, p *workbook.Product, out *report.Product) (*report.Measured, *medium) {
 	m := describe(rec)
 	log, problems := r.logs.read[rec]()
-	m.Problems = problems
+	m.Problems = slices.Clone(problems)
 	if log == nil {
 		return m, nil
 	}
@@ -159,6 +159,7 @@ func (r *runner) surroundings(rec *workbook.Record, p *workbook.Product, out *re
 		m.Problems = append(m.Problems, *wrong)
 		return m, nil
 	}
+	nextDay(rec, log, m)
 	return m, air
 }
 

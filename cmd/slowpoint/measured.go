@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"path/filepath"
+	"slices"
 	"sort"
 	"strings"
 	"sync"
@@ -200,6 +201,20 @@ func startOf(rec *workbook.Record, log *record.Log, s *workbook.Start) (float64,
 	return t, nil
 }
 
+// nextDay warns of a record whose first step begins at a time of the clock before that of the first reading: it is taken for the next day.
+func nextDay(rec *workbook.Record, log *record.Log, m *report.Measured) {
+	if len(rec.Starts) == 0 || log.Start.IsZero() {
+		return
+	}
+	s := &rec.Starts[0]
+	if h, min, sec := log.Start.Clock(); !s.Clock || !s.Date.IsZero() || s.After >= time.Duration(h)*time.Hour+time.Duration(min)*time.Minute+time.Duration(sec)*time.Second {
+		return
+	}
+	e := fault(rec, "Starts at", s.Typed, "is before the first reading, at "+shown(log, 0)+", and is taken for the next day: what was read before it is left out", "correct the time if that is not meant")
+	e.Level = cell.Warning
+	m.Problems = append(m.Problems, *e)
+}
+
 // shown writes a time of a record as its file has it.
 func shown(log *record.Log, s float64) string {
 	switch t := log.Start.Add(time.Duration(s * float64(time.Second))); {
@@ -268,7 +283,7 @@ func errorOf(rec *workbook.Record, log *record.Log) float64 {
 func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report.Product) *report.Measured {
 	m := describe(rec)
 	log, problems := r.logs.read[rec]()
-	m.Problems = problems
+	m.Problems = slices.Clone(problems)
 	if log == nil {
 		return m
 	}
@@ -282,6 +297,7 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 		m.Problems = append(m.Problems, *wrong)
 		return m
 	}
+	nextDay(rec, log, m)
 	re, lines := recording(rec, log, p, way, m)
 	if len(re.TimesS) == 0 {
 		m.Problems.Add(*fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it"))

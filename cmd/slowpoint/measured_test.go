@@ -13,6 +13,7 @@ import (
 	"slowpoint/cmd/slowpoint/record"
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
+	"slowpoint/model/cell"
 	"slowpoint/rules"
 )
 
@@ -389,6 +390,20 @@ func TestFromTheInstant(t *testing.T) {
 		m := r.measured(&r.plan.Records[0], p, nil)
 		if len(m.Judgement.Findings) != 1 || m.Judgement.Verdict != c.verdict {
 			t.Errorf("%s: %v: %+v %v, want %v", c.name, m.Judgement.Verdict, m.Judgement.Findings, m.Problems, c.verdict)
+		}
+	}
+}
+
+// TestNextDay: a first step whose clock is before the first reading's is taken for the next day's, with a warning.
+func TestNextDay(t *testing.T) {
+	log := &record.Log{Start: time.Date(0, 1, 1, 9, 12, 0, 0, time.UTC), TimesS: []float64{0, 82800}}
+	for _, c := range []struct {
+		hour, warnings int
+	}{{7, 1}, {10, 0}} {
+		m := describe(&workbook.Record{})
+		nextDay(&workbook.Record{Starts: []workbook.Start{{Clock: true, After: time.Duration(c.hour) * time.Hour, Typed: "store"}}}, log, m)
+		if len(m.Problems) != c.warnings || c.warnings > 0 && m.Problems[0].Level != cell.Warning {
+			t.Errorf("%d h: %v, want %d warnings", c.hour, m.Problems, c.warnings)
 		}
 	}
 }
