@@ -207,8 +207,11 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 	if air.ended {
 		air.durationS = to - from
 	}
-	to = from + air.durationS
 	last = log.TimesS[len(log.TimesS)-1]
+	if st.UntilC != nil && !air.ended { // it may take longer than planned, up to its longest
+		air.durationS = max(air.durationS, min(st.DurationS, last-from))
+	}
+	to = from + air.durationS
 	reach := max(1.5*log.StepS, 1) // the course of the last reading goes on for one more
 	if to > last+reach {
 		return nil, fault(rec, "File", rec.File, fmt.Sprintf("ends at %s, and %s needs it up to %s", shown(log, last), st.Name, shown(log, to)), "write when the step began and ended in Starts at, or give the whole file")

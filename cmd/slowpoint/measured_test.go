@@ -407,3 +407,21 @@ func TestNextDay(t *testing.T) {
 		}
 	}
 }
+
+// TestMediumUntil: a step that ends at a temperature may last longer in the recorded air than planned, as far as the log and its longest go.
+func TestMediumUntil(t *testing.T) {
+	_, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 3600, coolTo(8, 3600))
+	eight := 8.0
+	p.Steps[0].UntilC = &eight
+	for _, c := range []struct{ log, want float64 }{{40, 40}, {90, 60}, {30, 30}} { // minutes
+		log := &record.Log{StepS: 60}
+		for m := 0.0; m <= c.log; m++ {
+			log.TimesS, log.C = append(log.TimesS, 60*m), append(log.C, 2)
+		}
+		rec := &workbook.Record{Step: "bath"}
+		got, wrong := mediumOf(rec, log, p, []float64{1800}, describe(rec))
+		if wrong != nil || got.durationS != 60*c.want {
+			t.Errorf("a log of %g min: %+v, %v, want %g min", c.log, got, wrong, c.want)
+		}
+	}
+}
