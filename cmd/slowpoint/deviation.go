@@ -71,6 +71,10 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 		}
 		for i, m := range media {
 			st := &q.Steps[m.step]
+			if st.RadiatingC != nil {
+				c := *st.RadiatingC + m.walls(which[i], st.Medium)
+				st.RadiatingC = &c
+			}
 			st.Medium, st.Measured, st.DurationS = m.courses[which[i]], true, m.durationS
 			if m.ended {
 				st.UntilC = nil
@@ -89,7 +93,7 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 	for i := range findings {
 		asRead = append(asRead, findings[i].Verdict)
 	}
-	open := slices.ContainsFunc(media, func(m *medium) bool { return len(m.courses) > 3 || m.manyGaps })
+	open := slices.ContainsFunc(media, func(m *medium) bool { return len(m.courses) > 3 || m.manyGaps || p.Steps[m.step].RadiatingC != nil })
 	for _, which := range ends(media) {
 		bound, err := run(which)
 		if err != nil {
@@ -102,9 +106,9 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 			}
 		}
 	}
-	for i := range findings { // what may have been in a gap proves nothing
+	for i := range findings { // what may have been in a gap, or of walls that nobody logged, proves nothing
 		if f := &findings[i]; open && asRead[i] == rules.Met && f.Verdict == rules.NotMet {
-			f.Verdict, f.Why = rules.CannotTell, strings.TrimSuffix(f.Why, ".")+"; but that is at the unfavourable end of what the gaps in the record leave open, and by its readings alone it is met, so it cannot be told."
+			f.Verdict, f.Why = rules.CannotTell, strings.TrimSuffix(f.Why, ".")+"; but that is at the unfavourable end of what the record leaves open, and by its readings alone it is met, so it cannot be told."
 		}
 	}
 	for _, m := range media {
@@ -119,6 +123,32 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) *report.Devia
 	}
 	v.Judgement = rules.Conclude(findings, r.plan.Groups)
 	return v
+}
+
+// walls is by how much the radiating temperature is shifted from the plan's, K: by the mean of the record, and at its ends by its lowest and
+// its highest, for how fast walls follow the air nobody knows.
+func (m *medium) walls(which int, planned model.Course) float64 {
+	c := m.courses[which]
+	switch {
+	case which == 0:
+		return mean(c, m.durationS) - mean(planned, m.durationS)
+	case which <= (len(m.courses)-1)/2:
+		return slices.Min(c.C) - mean(planned, m.durationS)
+	}
+	return slices.Max(c.C) - mean(planned, m.durationS)
+}
+
+// mean is the mean of a course from its start to an instant, s; the last temperature goes on.
+func mean(c model.Course, until float64) float64 {
+	sum, t, x := 0.0, 0.0, c.C[0]
+	for i, at := range c.TimesS {
+		if at >= until {
+			end := x + (c.C[i]-x)*(until-t)/max(at-t, 1e-9)
+			return (sum + (until-t)*(x+end)/2) / until
+		}
+		sum, t, x = sum+(at-t)*(x+c.C[i])/2, at, c.C[i]
+	}
+	return (sum + (until-t)*x) / until
 }
 
 // ends are the runs beside the one as read: every combination of the ends of the media, as far as there are not too many.

@@ -425,3 +425,31 @@ func TestMediumUntil(t *testing.T) {
 		}
 	}
 }
+
+// TestMean of a course by hand: 10 to 20 in 60 s, 20 to 40 in the next 60 s, then 40.
+func TestMean(t *testing.T) {
+	c := model.Course{TimesS: []float64{0, 60, 120}, C: []float64{10, 20, 40}}
+	for _, x := range []struct{ until, want float64 }{{30, 12.5}, {60, 15}, {90, 55.0 / 3}, {120, 22.5}, {240, 31.25}} {
+		if got := mean(c, x.until); math.Abs(got-x.want) > 1e-9 {
+			t.Errorf("up to %g s: %g, want %g", x.until, got, x.want)
+		}
+	}
+}
+
+// TestDeviateWalls: an oven whose air was recorded colder radiates no longer as hot as planned.
+func TestDeviateWalls(t *testing.T) {
+	r, p := slabRunner(model.Cook, 0.04, 5, 180, 25, 5400, heatTo(70))
+	still, wet, hot, emissivity := p.Steps[0].Exposure, false, 180.0, 0.9
+	still.Surface, still.RadiatingC, still.Emissivity, still.Wet, still.FilmW = model.StillAir, &hot, &emissivity, &wet, nil
+	p.Steps[0].Exposure = still
+	at, air := minutesOf(92, func(m int) float64 { return 60 + 0.1*float64(m%2) })
+	withAir(t, r, at, air, 0.5)
+	out, err := r.judged(p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	v := r.deviate(p, out)
+	if out.Judgement.Verdict != rules.Met || v.Judgement.Verdict != rules.NotMet {
+		t.Errorf("as planned %v, in air of 60 °C %v: want met and not met", out.Judgement.Verdict, v.Judgement.Verdict)
+	}
+}
