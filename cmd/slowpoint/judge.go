@@ -116,6 +116,7 @@ func judge(cmd *cobra.Command, path, limits string, given workbook.Given, o *che
 			rec.Cells[heading] = cell.Ref{Sheet: "--" + f}
 		}
 	}
+	rec.Cells["File"] = cell.Ref{Sheet: name}
 	if given.Stages != "" {
 		rec.Cells["Starts at"] = cell.Ref{Sheet: "--stages"}
 	}
