@@ -190,6 +190,7 @@ func (r *runner) surroundings(rec *workbook.Record, p *workbook.Product, out *re
 		return m, nil
 	}
 	nextDay(rec, log, m)
+	inexact(rec, m)
 	return m, air
 }
 

@@ -215,6 +215,15 @@ func nextDay(rec *workbook.Record, log *record.Log, m *report.Measured) {
 	m.Problems = append(m.Problems, *e)
 }
 
+// inexact warns of a record whose instrument nobody knows.
+func inexact(rec *workbook.Record, m *report.Measured) {
+	if rec.AccuracyK == nil {
+		e := fault(rec, "Accuracy", "", "Accuracy is blank, so the instrument is taken for exact, and a verdict may rest on its error", "write how far it may be off")
+		e.Level = cell.Warning
+		m.Problems = append(m.Problems, *e)
+	}
+}
+
 // shown writes a time of a record as its file has it.
 func shown(log *record.Log, s float64) string {
 	switch t := log.Start.Add(time.Duration(s * float64(time.Second))); {
@@ -298,6 +307,7 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 		return m
 	}
 	nextDay(rec, log, m)
+	inexact(rec, m)
 	re, lines := recording(rec, log, p, way, m)
 	if len(re.TimesS) == 0 {
 		m.Problems.Add(*fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it"))

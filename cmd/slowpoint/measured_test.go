@@ -453,3 +453,18 @@ func TestDeviateWalls(t *testing.T) {
 		t.Errorf("as planned %v, in air of 60 °C %v: want met and not met", out.Judgement.Verdict, v.Judgement.Verdict)
 	}
 }
+
+// TestInexact: a blank accuracy is warned of; one of 0 is an answer.
+func TestInexact(t *testing.T) {
+	nought := 0.0
+	for _, c := range []struct {
+		accuracy *float64
+		warnings int
+	}{{nil, 1}, {&nought, 0}} {
+		m := describe(&workbook.Record{})
+		inexact(&workbook.Record{AccuracyK: c.accuracy}, m)
+		if len(m.Problems) != c.warnings || m.Problems.Faults() != 0 {
+			t.Errorf("accuracy %v: %v, want %d warnings and no error", c.accuracy, m.Problems, c.warnings)
+		}
+	}
+}
