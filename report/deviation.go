@@ -16,11 +16,17 @@ type Deviation struct {
 	WithinK   float64 // how far the straight lines that stand for the records may lie from their readings
 }
 
-// names are those of the records.
+// names are those of the records that were used; of all, if none was.
 func (v *Deviation) names() string {
-	var s []string
+	var s, all []string
 	for i := range v.Records {
-		s = append(s, v.Records[i].Name)
+		all = append(all, v.Records[i].Name)
+		if v.Records[i].Problems.Faults() == 0 {
+			s = append(s, v.Records[i].Name)
+		}
+	}
+	if len(s) == 0 {
+		s = all
 	}
 	return strings.Join(s, ", ")
 }

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"slowpoint/cmd/slowpoint/record"
 	"slowpoint/cmd/slowpoint/workbook"
@@ -71,6 +72,10 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 		}
 		for i, m := range media {
 			st := &q.Steps[m.step]
+			if st.RadiatingC != nil {
+				c := *st.RadiatingC + m.walls(which[i], st.Medium)
+				st.RadiatingC = &c
+			}
 			st.Medium, st.Measured, st.DurationS = m.courses[which[i]], true, m.durationS
 			if m.ended {
 				st.UntilC = nil
@@ -85,6 +90,11 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 	}
 	v.History = after.History
 	findings := after.Judgement.Findings
+	var asRead []rules.Verdict
+	for i := range findings {
+		asRead = append(asRead, findings[i].Verdict)
+	}
+	open := slices.ContainsFunc(media, func(m *medium) bool { return len(m.courses) > 3 || m.manyGaps || p.Steps[m.step].RadiatingC != nil })
 	for _, which := range ends(media) {
 		bound, err := run(which)
 		if err != nil {
@@ -95,6 +105,11 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 			if i < len(bound.Judgement.Findings) && rules.Worse(&bound.Judgement.Findings[i], &findings[i]) {
 				findings[i] = bound.Judgement.Findings[i]
 			}
+		}
+	}
+	for i := range findings { // what may have been in a gap, or of walls that nobody logged, proves nothing
+		if f := &findings[i]; open && asRead[i] == rules.Met && f.Verdict == rules.NotMet {
+			f.Verdict, f.Why = rules.CannotTell, strings.TrimSuffix(f.Why, ".")+"; but that is at the unfavourable end of what the record leaves open, and by its readings alone it is met, so it cannot be told."
 		}
 	}
 	for _, m := range media {
@@ -132,6 +147,32 @@ func traceOf(media []*medium, re *model.Recording, first int) *model.Trace {
 	return tr
 }
 
+// walls is by how much the radiating temperature is shifted from the plan's, K: by the mean of the record, and at its ends by its lowest and
+// its highest, for how fast walls follow the air nobody knows.
+func (m *medium) walls(which int, planned model.Course) float64 {
+	c := m.courses[which]
+	switch {
+	case which == 0:
+		return mean(c, m.durationS) - mean(planned, m.durationS)
+	case which <= (len(m.courses)-1)/2:
+		return slices.Min(c.C) - mean(planned, m.durationS)
+	}
+	return slices.Max(c.C) - mean(planned, m.durationS)
+}
+
+// mean is the mean of a course from its start to an instant, s; the last temperature goes on.
+func mean(c model.Course, until float64) float64 {
+	sum, t, x := 0.0, 0.0, c.C[0]
+	for i, at := range c.TimesS {
+		if at >= until {
+			end := x + (c.C[i]-x)*(until-t)/max(at-t, 1e-9)
+			return (sum + (until-t)*(x+end)/2) / until
+		}
+		sum, t, x = sum+(at-t)*(x+c.C[i])/2, at, c.C[i]
+	}
+	return (sum + (until-t)*x) / until
+}
+
 // ends are the runs beside the one as read: every combination of the ends of the media, as far as there are not too many.
 func ends(media []*medium) [][]int {
 	n := 1
@@ -160,7 +201,7 @@ func ends(media []*medium) [][]int {
 func (r *runner) surroundings(rec *workbook.Record, p *workbook.Product, out *report.Product) (*report.Measured, *medium) {
 	m := describe(rec)
 	log, problems := r.logs.read[rec]()
-	m.Problems = problems
+	m.Problems = slices.Clone(problems)
 	if log == nil {
 		return m, nil
 	}
@@ -170,6 +211,8 @@ func (r *runner) surroundings(rec *workbook.Record, p *workbook.Product, out *re
 		m.Problems = append(m.Problems, *wrong)
 		return m, nil
 	}
+	nextDay(rec, log, m)
+	inexact(rec, m)
 	return m, air
 }
 
@@ -181,13 +224,16 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 	if len(st.Medium.TimesS) == 0 {
 		return nil, fault(rec, "What it measured", rec.Measured, st.Name+" has no surroundings with a temperature", "name another step")
 	}
-	from, to := 0.0, 0.0
-	begun := len(rec.Starts) == 0
-	for _, s := range rec.Starts {
+	from, to, known, last := 0.0, 0.0, -1, 0.0 // known: the last step up to the record's own whose beginning was written down
+	for n, s := range rec.Starts {
 		t, wrong := startOf(rec, log, &s)
 		if wrong != nil {
 			return nil, wrong
 		}
+		if n > 0 && t <= last {
+			return nil, fault(rec, "Starts at", s.Typed, "is no later than the step before it", "write the steps in their order")
+		}
+		last = t
 		i := air.step // a time without a step is that of the record's own
 		if s.Step != "" {
 			i = stepNamed(p.Steps, s.Step)
@@ -196,21 +242,29 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 			i = len(p.Steps)
 		}
 		switch {
-		case i == air.step:
-			from, begun = t, true
+		case i <= air.step:
+			from, known = t, i
 		case i == air.step+1:
 			to, air.ended = t, true
 		}
 	}
-	if !begun {
-		return nil, fault(rec, "Starts at", "", "does not say when "+st.Name+" began", "write it: "+st.Name+" 11:20")
+	if len(rec.Starts) > 0 {
+		if known < 0 {
+			return nil, fault(rec, "Starts at", rec.Starts[0].Typed, "does not say when "+st.Name+" began", "write when it began before it")
+		}
+		for ; known < air.step; known++ { // as long as the plan has them
+			from += lengths[known]
+		}
 	}
 	air.durationS = lengths[air.step]
 	if air.ended {
 		air.durationS = to - from
 	}
+	last = log.TimesS[len(log.TimesS)-1]
+	if st.UntilC != nil && !air.ended { // it may take longer than planned, up to its longest
+		air.durationS = max(air.durationS, min(st.DurationS, last-from))
+	}
 	to = from + air.durationS
-	last := log.TimesS[len(log.TimesS)-1]
 	reach := max(1.5*log.StepS, 1) // the course of the last reading goes on for one more
 	if to > last+reach {
 		return nil, fault(rec, "File", rec.File, fmt.Sprintf("ends at %s, and %s needs it up to %s", shown(log, last), st.Name, shown(log, to)), "write when the step began and ended in Starts at, or give the whole file")
@@ -218,12 +272,13 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 	if air.durationS <= 0 {
 		return nil, fault(rec, "Starts at", "", st.Name+" has no length by it", "correct it")
 	}
-	air.fill(log, from, to, errorOf(rec, log), m)
+	air.fill(log, p.Steps, from, to, errorOf(rec, log), m)
 	return air, nil
 }
 
-// fill makes the courses of the readings between two instants, s from the first.
-func (air *medium) fill(log *record.Log, from, to, errorK float64, m *report.Measured) {
+// fill makes the courses of the readings between two instants, s from the first. In a gap the medium may have been at anything between the
+// extremes of the whole record and of the surroundings that the plan has elsewhere: what stops a logger may have stopped a chiller.
+func (air *medium) fill(log *record.Log, steps []model.Step, from, to, errorK float64, m *report.Measured) {
 	i := 0
 	for i+1 < len(log.TimesS) && log.TimesS[i+1] <= from {
 		i++
@@ -238,6 +293,8 @@ func (air *medium) fill(log *record.Log, from, to, errorK float64, m *report.Mea
 	for k := i; k <= j; k++ {
 		air.timesS, air.c = append(air.timesS, log.TimesS[k]-from), append(air.c, log.C[k])
 	}
+	elsewhere := elsewhere(steps, air.step)
+	lowest, highest = min(lowest, slices.Min(elsewhere)), max(highest, slices.Max(elsewhere))
 	gaps := map[int]int{} // by the reading before it: its number
 	for _, g := range log.Gaps {
 		if g >= i && g < j {
@@ -295,6 +352,25 @@ func (air *medium) fill(log *record.Log, from, to, errorK float64, m *report.Mea
 			}))
 		}
 	}
+}
+
+// elsewhere are the planned temperatures of a step's own surroundings and of those that it may come to when its equipment stops, °C: those of
+// all steps where it heats, else those of the steps that do not heat, such as a kitchen's air. Where none of these is warmer, as without a rest
+// on the way to the chiller, they are those of all steps.
+func elsewhere(steps []model.Step, i int) []float64 {
+	heats := func(k int) bool { return steps[k].Stage != nil && steps[k].Stage.Heats }
+	own := slices.Max(steps[i].Medium.C)
+	var mild, all []float64
+	for k := range steps {
+		all = append(all, steps[k].Medium.C...)
+		if !heats(k) {
+			mild = append(mild, steps[k].Medium.C...)
+		}
+	}
+	if heats(i) || slices.Max(mild) <= own {
+		return all
+	}
+	return mild
 }
 
 // simplified drops the rows of a course that straight lines between the others pass within simplifyK (Ramer, Douglas and Peucker's method).

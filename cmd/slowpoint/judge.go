@@ -98,6 +98,11 @@ func judge(cmd *cobra.Command, path, limits string, given workbook.Given, o *che
 		return &failure{exitInput, err}
 	}
 	flagged(plan.Problems)
+	for i := range plan.Problems {
+		if e := &plan.Problems[i]; given.Stages != "" && e.At.Sheet == "--starts" {
+			e.At.Sheet = "--stages"
+		}
+	}
 	if rec == nil || !rec.Sound {
 		tellProblems(cmd.ErrOrStderr(), ofFlags(plan.Problems))
 		return &failure{exitInput, errors.New("the record could not be judged")}
@@ -110,6 +115,10 @@ func judge(cmd *cobra.Command, path, limits string, given workbook.Given, o *che
 		if f := flagOf(heading); f != "" {
 			rec.Cells[heading] = cell.Ref{Sheet: "--" + f}
 		}
+	}
+	rec.Cells["File"] = cell.Ref{Sheet: name}
+	if given.Stages != "" {
+		rec.Cells["Starts at"] = cell.Ref{Sheet: "--stages"}
 	}
 	p := rec.Products[0]
 	plan.Products, plan.NotCalculated = []workbook.Product{*p}, nil

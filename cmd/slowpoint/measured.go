@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math"
 	"path/filepath"
+	"slices"
+	"sort"
 	"strings"
 	"sync"
 	"time"
@@ -199,6 +201,29 @@ func startOf(rec *workbook.Record, log *record.Log, s *workbook.Start) (float64,
 	return t, nil
 }
 
+// nextDay warns of a record whose first step begins at a time of the clock before that of the first reading: it is taken for the next day.
+func nextDay(rec *workbook.Record, log *record.Log, m *report.Measured) {
+	if len(rec.Starts) == 0 || log.Start.IsZero() {
+		return
+	}
+	s := &rec.Starts[0]
+	if h, min, sec := log.Start.Clock(); !s.Clock || !s.Date.IsZero() || s.After >= time.Duration(h)*time.Hour+time.Duration(min)*time.Minute+time.Duration(sec)*time.Second {
+		return
+	}
+	e := fault(rec, "Starts at", s.Typed, "is before the first reading, at "+shown(log, 0)+", and is taken for the next day: what was read before it is left out", "correct the time if that is not meant")
+	e.Level = cell.Warning
+	m.Problems = append(m.Problems, *e)
+}
+
+// inexact warns of a record whose instrument nobody knows.
+func inexact(rec *workbook.Record, m *report.Measured) {
+	if rec.AccuracyK == nil {
+		e := fault(rec, "Accuracy", "", "Accuracy is blank, so the instrument is taken for exact, and a verdict may rest on its error", "write how far it may be off")
+		e.Level = cell.Warning
+		m.Problems = append(m.Problems, *e)
+	}
+}
+
 // shown writes a time of a record as its file has it.
 func shown(log *record.Log, s float64) string {
 	switch t := log.Start.Add(time.Duration(s * float64(time.Second))); {
@@ -267,7 +292,7 @@ func errorOf(rec *workbook.Record, log *record.Log) float64 {
 func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report.Product, media []*medium) *report.Measured {
 	m := describe(rec)
 	log, problems := r.logs.read[rec]()
-	m.Problems = problems
+	m.Problems = slices.Clone(problems)
 	if log == nil {
 		return m
 	}
@@ -281,13 +306,15 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 		m.Problems = append(m.Problems, *wrong)
 		return m
 	}
+	nextDay(rec, log, m)
+	inexact(rec, m)
 	re, lines := recording(rec, log, p, way, m)
 	if len(re.TimesS) == 0 {
 		m.Problems.Add(*fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it"))
 		return m
 	}
 	re.Medium = traceOf(media, re, way.first)
-	findings, err := rules.FindRecorded(r.plan.Limits, rules.Recorded{Product: p.Name, Family: p.Family, Recording: re})
+	findings, err := rules.FindRecorded(r.plan.Limits, rules.Recorded{Product: p.Name, Family: p.Family, Recording: bordered(re, log, way)})
 	if err != nil {
 		m.Problems.Add(cell.Error{At: rec.At, Msg: "The record cannot be judged: " + err.Error()})
 		return m
@@ -309,6 +336,9 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 	return m
 }
 
+// tiny is below what any logger's clock tells, s.
+const tiny = 1e-6
+
 // recording is what a log says of a product on the clock of its chain, and the line of the file of each reading.
 func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *ran, m *report.Measured) (re *model.Recording, lines []int32) {
 	re = &model.Recording{Point: model.Point{At: rec.At, Name: rec.Measured, Place: rec.Place.Place}, Surface: rec.Of == workbook.AtSurface, LowC: math.NaN(), HighC: math.NaN(),
@@ -320,7 +350,6 @@ func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *
 	for i := 0; i+1 < len(way.startS); i++ {
 		re.Spans = append(re.Spans, model.Span{Step: &p.Steps[way.first+i], StartS: way.startS[i] - zero, EndS: way.startS[i+1] - zero})
 	}
-	const tiny = 1e-6
 	from, to := 0, len(log.TimesS)
 	for from < to && log.TimesS[from] < zero-tiny {
 		from++
@@ -349,6 +378,40 @@ func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *
 		}
 	}
 	return re, lines
+}
+
+// bordered is a recording with the last reading before its steps and the first after them, so that it is judged from the instants at which
+// the steps began and ended, and not from the readings nearest to these.
+func bordered(re *model.Recording, log *record.Log, way *ran) *model.Recording {
+	zero, end := way.startS[0], way.startS[len(way.startS)-1]
+	first := sort.Search(len(log.TimesS), func(i int) bool { return log.TimesS[i] >= zero-tiny })
+	last := first + len(re.TimesS) - 1
+	lead, trail := 0, 0
+	if first > 0 && re.TimesS[0] > tiny {
+		lead = 1
+	}
+	if last+1 < len(log.TimesS) && log.TimesS[last] < end-tiny {
+		trail = 1
+	}
+	if lead+trail == 0 {
+		return re
+	}
+	out := *re
+	out.TimesS, out.C, out.Gaps, out.Doubted = nil, log.C[first-lead:last+1+trail:last+1+trail], nil, nil
+	for _, t := range log.TimesS[first-lead : last+1+trail] {
+		out.TimesS = append(out.TimesS, t-zero)
+	}
+	for _, g := range log.Gaps {
+		if g >= first-lead && g < last+trail {
+			out.Gaps = append(out.Gaps, g-first+lead)
+		}
+	}
+	for _, d := range log.Doubtful {
+		if d >= first-lead && d <= last+trail {
+			out.Doubted = append(out.Doubted, d-first+lead)
+		}
+	}
+	return &out
 }
 
 // placeIn names the reading that lies nearest to an instant.

@@ -13,6 +13,7 @@ import (
 	"slowpoint/cmd/slowpoint/record"
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
+	"slowpoint/model/cell"
 	"slowpoint/report"
 	"slowpoint/rules"
 )
@@ -314,5 +315,209 @@ func TestRecordedAirHelps(t *testing.T) {
 	}
 	if a, b := alone.Judgement.Findings[0], with.Judgement.Findings[0]; a.Verdict != rules.CannotTell || b.Verdict != rules.Met {
 		t.Errorf("without the air %v (%s), with it %v (%s)", a.Verdict, a.Why, b.Verdict, b.Why)
+	}
+}
+
+// TestElsewhere: what stands still may come to the temperature of a kitchen that the plan knows, else to all that it knows.
+func TestElsewhere(t *testing.T) {
+	step := func(s *model.Stage, c float64) model.Step {
+		return model.Step{Stage: s, Exposure: model.Exposure{Medium: model.Course{TimesS: []float64{0}, C: []float64{c}}}}
+	}
+	for _, c := range []struct {
+		name  string
+		steps []model.Step
+		i     int
+		want  []float64
+	}{
+		{"a kitchen", []model.Step{step(model.Cook, 120), step(model.Rest, 22), step(model.Cool, 1)}, 2, []float64{22, 1}},
+		{"no kitchen", []model.Step{step(model.Cook, 120), step(model.Cool, 1)}, 1, []float64{120, 1}},
+		{"an oven", []model.Step{step(model.Cook, 120), step(model.Rest, 22), step(model.Cool, 1)}, 0, []float64{120, 22, 1}},
+	} {
+		if got := elsewhere(c.steps, c.i); fmt.Sprint(got) != fmt.Sprint(c.want) {
+			t.Errorf("%s: %v, want %v", c.name, got, c.want)
+		}
+	}
+}
+
+// TestDeviateStopped: a log that stops with its chiller, and is cold on both sides of its gap, shows nothing of the time between.
+func TestDeviateStopped(t *testing.T) {
+	r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 2*3600, coolTo(20, 2*3600))
+	kitchen := p.Steps[0]
+	kitchen.Name, kitchen.Stage, kitchen.DurationS = "carry", model.Rest, 1
+	kitchen.Medium.C = []float64{25}
+	p.Steps = []model.Step{kitchen, p.Steps[0]}
+	var at, air []float64
+	for m := 0; m <= 125; m++ {
+		if m < 10 || m > 115 {
+			at, air = append(at, float64(m)), append(air, 2+0.01*float64(m%2))
+		}
+	}
+	withAir(t, r, at, air, 0)
+	out, err := r.judged(p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	v, _ := r.deviate(p, out)
+	if len(v.Judgement.Findings) != 1 || out.Judgement.Findings[0].Verdict != rules.Met || v.Judgement.Verdict != rules.CannotTell {
+		t.Errorf("as planned %v (%s), as recorded %v (%s): want met and cannot tell", out.Judgement.Verdict, out.Judgement.Findings[0].Why, v.Judgement.Verdict, v.Judgement.Findings[0].Why)
+	}
+}
+
+// TestMediumStarts: the step of a medium begins when the steps before it, of which one is written down, are over.
+func TestMediumStarts(t *testing.T) {
+	_, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 1800, coolTo(8, 1800))
+	oven := p.Steps[0]
+	oven.Name, oven.Stage = "oven", model.Cook
+	p.Steps = []model.Step{oven, p.Steps[0]}
+	lengths := []float64{600, 1800}
+	log := &record.Log{StepS: 60}
+	for m := 0; m <= 90; m++ { // it reads the minute
+		log.TimesS, log.C = append(log.TimesS, 60*float64(m)), append(log.C, float64(m))
+	}
+	after := func(step string, m int) workbook.Start {
+		return workbook.Start{Step: step, Elapsed: true, After: time.Duration(m) * time.Minute, Typed: step}
+	}
+	end := workbook.Start{End: true, Elapsed: true, After: 50 * time.Minute, Typed: "end"}
+	for _, c := range []struct {
+		name     string
+		starts   []workbook.Start
+		from, to float64 // minutes
+		fault    string
+	}{
+		{"nothing said", nil, 0, 30, ""},
+		{"its own", []workbook.Start{after("bath", 7)}, 7, 37, ""},
+		{"the one before", []workbook.Start{after("oven", 7)}, 17, 47, ""},
+		{"both", []workbook.Start{after("oven", 3), after("bath", 20)}, 20, 50, ""},
+		{"with its end", []workbook.Start{after("oven", 3), end}, 13, 50, ""},
+		{"its end alone", []workbook.Start{end}, 0, 0, "does not say when bath began"},
+		{"turned round", []workbook.Start{after("oven", 20), after("bath", 3)}, 0, 0, "is no later than the step before it"},
+	} {
+		rec := &workbook.Record{Step: "bath", Starts: c.starts}
+		got, wrong := mediumOf(rec, log, p, lengths, describe(rec))
+		switch {
+		case wrong != nil:
+			if c.fault == "" || wrong.Msg != c.fault {
+				t.Errorf("%s: %s, want %q", c.name, wrong.Msg, c.fault)
+			}
+		case c.fault != "":
+			t.Errorf("%s: no error, want %q", c.name, c.fault)
+		default:
+			k := got.courses[0]
+			if n := len(k.C) - 1; k.C[0] != c.from || k.C[n] != c.to || math.Abs(got.durationS-60*(c.to-c.from)) > 1e-6 {
+				t.Errorf("%s: from minute %g to %g for %g s, want %g to %g", c.name, k.C[0], k.C[n], got.durationS, c.from, c.to)
+			}
+		}
+	}
+}
+
+// TestFromTheInstant: steps that begin and end between readings are judged from these instants, and not from the readings within them.
+func TestFromTheInstant(t *testing.T) {
+	for _, c := range []struct {
+		name       string
+		stage      *model.Stage
+		kind       *rules.Kind
+		end        int // minute
+		minutes, c []float64
+		verdict    rules.Verdict
+	}{
+		// 50 °C at 120 min, 5 °C by about 230 min: 165 min after the step began at 65 min, and 110 min after the first reading in it
+		{"a clock of the stage", model.Cool, rules.CoolWithin, 290, []float64{0, 60, 120, 180, 230, 290}, []float64{80, 75, 50, 20, 4.8, 4}, rules.CannotTell},
+		{"kept to the end", model.HoldHot, rules.StayAbove, 235, []float64{0, 60, 120, 180, 240}, []float64{80, 75, 64, 64, 50}, rules.CannotTell},
+		{"kept to the last reading", model.HoldHot, rules.StayAbove, 180, []float64{0, 60, 120, 180, 240}, []float64{80, 75, 64, 64, 50}, rules.Met},
+	} {
+		r, p := slabRunner(c.stage, 0.04, 60, 2, 25, 2*3600, coolTo(5, 2*3600))
+		l := &r.plan.Limits[0]
+		l.Kind, l.Stages = c.kind, []*model.Stage{c.stage}
+		from := 63.0
+		l.FromC, l.Clock = nil, rules.Clock{Start: c.stage}
+		if c.kind == rules.StayAbove {
+			l.FromC, l.ToC, l.TimeS, l.Clock = &from, nil, nil, rules.Clock{}
+		}
+		dir := t.TempDir()
+		logFile(t, dir, "core.csv", c.minutes, c.c)
+		accuracy := 0.0
+		r.plan.Records = []workbook.Record{{Name: "Core", Products: []*workbook.Product{p}, File: "core.csv", Time: "Elapsed (min)", Temperature: "Air (°C)", Measured: "slowest point",
+			Of: workbook.AtSlowest, AccuracyK: &accuracy, Sound: true, Starts: []workbook.Start{
+				{Step: "bath", Elapsed: true, After: 65 * time.Minute, Typed: "bath 65 min"}, {End: true, Elapsed: true, After: time.Duration(c.end) * time.Minute, Typed: "end"}}}}
+		r.logs = newLogs(r.plan, dir, time.Time{})
+		m := r.measured(&r.plan.Records[0], p, nil, nil)
+		if len(m.Judgement.Findings) != 1 || m.Judgement.Verdict != c.verdict {
+			t.Errorf("%s: %v: %+v %v, want %v", c.name, m.Judgement.Verdict, m.Judgement.Findings, m.Problems, c.verdict)
+		}
+	}
+}
+
+// TestNextDay: a first step whose clock is before the first reading's is taken for the next day's, with a warning.
+func TestNextDay(t *testing.T) {
+	log := &record.Log{Start: time.Date(0, 1, 1, 9, 12, 0, 0, time.UTC), TimesS: []float64{0, 82800}}
+	for _, c := range []struct {
+		hour, warnings int
+	}{{7, 1}, {10, 0}} {
+		m := describe(&workbook.Record{})
+		nextDay(&workbook.Record{Starts: []workbook.Start{{Clock: true, After: time.Duration(c.hour) * time.Hour, Typed: "store"}}}, log, m)
+		if len(m.Problems) != c.warnings || c.warnings > 0 && m.Problems[0].Level != cell.Warning {
+			t.Errorf("%d h: %v, want %d warnings", c.hour, m.Problems, c.warnings)
+		}
+	}
+}
+
+// TestMediumUntil: a step that ends at a temperature may last longer in the recorded air than planned, as far as the log and its longest go.
+func TestMediumUntil(t *testing.T) {
+	_, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 3600, coolTo(8, 3600))
+	eight := 8.0
+	p.Steps[0].UntilC = &eight
+	for _, c := range []struct{ log, want float64 }{{40, 40}, {90, 60}, {30, 30}} { // minutes
+		log := &record.Log{StepS: 60}
+		for m := 0.0; m <= c.log; m++ {
+			log.TimesS, log.C = append(log.TimesS, 60*m), append(log.C, 2)
+		}
+		rec := &workbook.Record{Step: "bath"}
+		got, wrong := mediumOf(rec, log, p, []float64{1800}, describe(rec))
+		if wrong != nil || got.durationS != 60*c.want {
+			t.Errorf("a log of %g min: %+v, %v, want %g min", c.log, got, wrong, c.want)
+		}
+	}
+}
+
+// TestMean of a course by hand: 10 to 20 in 60 s, 20 to 40 in the next 60 s, then 40.
+func TestMean(t *testing.T) {
+	c := model.Course{TimesS: []float64{0, 60, 120}, C: []float64{10, 20, 40}}
+	for _, x := range []struct{ until, want float64 }{{30, 12.5}, {60, 15}, {90, 55.0 / 3}, {120, 22.5}, {240, 31.25}} {
+		if got := mean(c, x.until); math.Abs(got-x.want) > 1e-9 {
+			t.Errorf("up to %g s: %g, want %g", x.until, got, x.want)
+		}
+	}
+}
+
+// TestDeviateWalls: an oven whose air was recorded colder radiates no longer as hot as planned.
+func TestDeviateWalls(t *testing.T) {
+	r, p := slabRunner(model.Cook, 0.04, 5, 180, 25, 5400, heatTo(70))
+	still, wet, hot, emissivity := p.Steps[0].Exposure, false, 180.0, 0.9
+	still.Surface, still.RadiatingC, still.Emissivity, still.Wet, still.FilmW = model.StillAir, &hot, &emissivity, &wet, nil
+	p.Steps[0].Exposure = still
+	at, air := minutesOf(92, func(m int) float64 { return 60 + 0.1*float64(m%2) })
+	withAir(t, r, at, air, 0.5)
+	out, err := r.judged(p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	v, _ := r.deviate(p, out)
+	if out.Judgement.Verdict != rules.Met || v.Judgement.Verdict != rules.NotMet {
+		t.Errorf("as planned %v, in air of 60 °C %v: want met and not met", out.Judgement.Verdict, v.Judgement.Verdict)
+	}
+}
+
+// TestInexact: a blank accuracy is warned of; one of 0 is an answer.
+func TestInexact(t *testing.T) {
+	nought := 0.0
+	for _, c := range []struct {
+		accuracy *float64
+		warnings int
+	}{{nil, 1}, {&nought, 0}} {
+		m := describe(&workbook.Record{})
+		inexact(&workbook.Record{AccuracyK: c.accuracy}, m)
+		if len(m.Problems) != c.warnings || m.Problems.Faults() != 0 {
+			t.Errorf("accuracy %v: %v, want %d warnings and no error", c.accuracy, m.Problems, c.warnings)
+		}
 	}
 }

@@ -106,15 +106,18 @@ func loosely(typed string) (*product, error) {
 			continue
 		}
 		var of *model.Stage
+		word := ""
 		for _, s := range model.Stages {
-			if strings.HasPrefix(Key(part)+" ", Key(s.Name)+" ") && (of == nil || len(s.Name) > len(of.Name)) {
-				of = s
+			for _, w := range []string{s.Name, s.Also} {
+				if len(w) > len(word) && strings.HasPrefix(Key(part), Key(w)) && (len(part) == len(w) || strings.ContainsRune(stepEnds, rune(part[len(w)]))) {
+					of, word = s, w
+				}
 			}
 		}
 		if of == nil {
 			return nil, fmt.Errorf("%q does not begin with a stage%s; the stages are %s", part, meant(part, words), and(words))
 		}
-		p.Steps = append(p.Steps, model.Step{Name: of.Name, Stage: of, DurationS: math.Inf(1)})
+		p.Steps = append(p.Steps, model.Step{Name: word, Stage: of, DurationS: math.Inf(1)})
 	}
 	if len(p.Steps) == 0 {
 		return nil, fmt.Errorf("%q names no stage; the stages are %s", typed, and(words))

@@ -67,6 +67,9 @@ type Start struct {
 // theEnd is the word for the end of a chain.
 const theEnd = "end"
 
+// stepEnds are the signs that may divide a step from its time.
+const stepEnds = " ,:="
+
 // readRecords reads the sheet Records.
 func (r *reader) readRecords() {
 	t := r.tables["Records"]
@@ -243,8 +246,8 @@ func (rec *Record) starting(r *reader, l *Line, of []*product) {
 		s := Start{Typed: part}
 		rest := part
 		for _, st := range chain { // the longest name that fits
-			if len(st) > len(s.Step) && len(part) >= len(st) && Key(part[:len(st)]) == Key(st) && (len(part) == len(st) || strings.ContainsRune(" ,:=", rune(part[len(st)]))) {
-				s.Step, rest = st, strings.TrimSpace(strings.TrimLeft(part[len(st):], " ,:="))
+			if len(st) > len(s.Step) && len(part) >= len(st) && Key(part[:len(st)]) == Key(st) && (len(part) == len(st) || strings.ContainsRune(stepEnds, rune(part[len(st)]))) {
+				s.Step, rest = st, strings.TrimSpace(strings.TrimLeft(part[len(st):], stepEnds))
 			}
 		}
 		if s.Step == "" && strings.HasPrefix(Key(part), theEnd+" ") {
