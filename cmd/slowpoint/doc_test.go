@@ -5,6 +5,7 @@ import (
 	"encoding/json"
 	"flag"
 	"fmt"
+	"math"
 	"os"
 	"path/filepath"
 	"regexp"
@@ -408,6 +409,7 @@ func TestLike(t *testing.T) {
 // TestHelpExamples runs the examples of every --help.
 func TestHelpExamples(t *testing.T) {
 	confirmed := ownList(t)
+	probeFile(t)
 	for _, name := range []string{"plan.xlsx", "my-plan.xlsx", "last-year.xlsx"} {
 		if code := run([]string{"blank", "--demo", name}, nil, &bytes.Buffer{}, os.Stderr); code != 0 {
 			t.Fatalf("blank: exit code %d", code)
@@ -419,7 +421,7 @@ func TestHelpExamples(t *testing.T) {
 		}
 		for _, line := range strings.Split(c.Example, "\n") {
 			t.Run(strings.TrimSpace(line), func(t *testing.T) {
-				words := strings.Fields(line)
+				words := wordsOf(line)
 				if i := slices.Index(words, "--map"); i > 0 { // the proposed one, after the user confirmed it
 					words[i+1] = confirmed
 				}
@@ -436,6 +438,35 @@ func TestHelpExamples(t *testing.T) {
 		if code := run(append(strings.Fields(c.CommandPath())[1:], "--help"), nil, &out, &out); code != 0 || !strings.Contains(out.String(), c.Example) {
 			t.Errorf("%s --help: exit code %d, or its example is missing:\n%s", c.CommandPath(), code, &out)
 		}
+	}
+}
+
+// wordsOf parts a line at blanks, but for those in quotation marks.
+func wordsOf(line string) (words []string) {
+	for i, part := range strings.Split(line, `"`) {
+		if i%2 == 1 {
+			words = append(words, part)
+		} else {
+			words = append(words, strings.Fields(part)...)
+		}
+	}
+	return words
+}
+
+// probeFile writes a logger's file as the examples of judge have it: cooked from 09:12 on, put into ice at 11:40.
+func probeFile(t *testing.T) {
+	t.Helper()
+	var b strings.Builder
+	b.WriteString("Time,Core (°C)\n")
+	for m := 0; m <= 350; m++ {
+		c := 85 - 80*math.Exp(-float64(m)/30)
+		if m > 148 { // after 2 h 13 min in the pot and 15 min of rest
+			c = 1 + 84*math.Exp(-float64(m-148)/35)
+		}
+		fmt.Fprintf(&b, "%02d:%02d:00,%.1f\n", 9+(12+m)/60, (12+m)%60, c)
+	}
+	if err := os.WriteFile("probe.csv", []byte(b.String()), 0o644); err != nil {
+		t.Fatal(err)
 	}
 }
 

@@ -118,7 +118,7 @@ func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths 
 		if g, ok := given[i]; ok {
 			t = g
 		} else if later := nextGiven(given, i, len(steps)); later >= 0 && t >= given[later] {
-			return nil, fault(rec, "Starts at", "", fmt.Sprintf("%s would begin by the plan's durations at %s, which is after %s began", steps[i].Name, shown(log, t), nameOf(steps, later)), "write when it began: Oven 09:12; Rest 11:02; Chill 11:20")
+			return nil, fault(rec, "Starts at", "", fmt.Sprintf("%s would begin by the plan's durations at %s, which is after %s began", steps[i].Name, shown(log, t), steps[later].Name), "write when it began: Oven 09:12; Rest 11:02; Chill 11:20")
 		}
 		if t >= end {
 			break
@@ -134,21 +134,14 @@ func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths 
 	return r, nil
 }
 
-// nextGiven is the next step whose beginning is known; −1 if there is none.
+// nextGiven is the next of n steps whose beginning is known; −1 if there is none.
 func nextGiven(given map[int]float64, i, n int) int {
-	for k := i + 1; k <= n; k++ {
+	for k := i + 1; k < n; k++ {
 		if _, ok := given[k]; ok {
 			return k
 		}
 	}
 	return -1
-}
-
-func nameOf(steps []model.Step, i int) string {
-	if i >= len(steps) {
-		return "the end"
-	}
-	return steps[i].Name
 }
 
 // stepNamed finds a step; 0 if there is none of that name, which the reader told.

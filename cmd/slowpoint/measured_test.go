@@ -41,6 +41,7 @@ func TestLaidOut(t *testing.T) {
 		{"with its date", []workbook.Start{{Step: "Chill", Clock: true, Date: day, After: clock(0, 10), Typed: "Chill 2026-01-20 00:10"}}, 3600, 2, []float64{1200, 3600}, ""},
 		{"to its end", []workbook.Start{{Step: "Rest", Elapsed: true, After: time.Minute, Typed: "Rest 1 min"}, {End: true, Elapsed: true, After: 10 * time.Minute, Typed: "end 10 min"}},
 			3600, 1, []float64{60, 180, 600}, ""},
+		{"ended within a step", []workbook.Start{{Elapsed: true, Typed: "0 s"}, {End: true, Elapsed: true, After: 5 * time.Minute, Typed: "end 5 min"}}, 3600, 0, []float64{0, 300}, ""},
 		{"longer than it could be", []workbook.Start{{Step: "Oven", Typed: "Oven"}, {Step: "Chill", Elapsed: true, After: 300 * time.Second, Typed: "Chill 300 s"}},
 			3600, 0, nil, "Rest would begin by the plan's durations at 2026-01-20 00:00:00, which is after Chill began"},
 		{"before the record", []workbook.Start{{Clock: true, Date: day.AddDate(0, 0, -1), After: clock(23, 0), Typed: "2026-01-19 23:00"}}, 3600, 0, nil, "is before the first reading, at 2026-01-19 23:50:00"},
