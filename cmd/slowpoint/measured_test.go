@@ -468,3 +468,36 @@ func TestInexact(t *testing.T) {
 		}
 	}
 }
+
+// TestUnread: what was not recorded is not taken for met, and a clock that may have started before the first reading not for none.
+func TestUnread(t *testing.T) {
+	steps := []model.Step{{Name: "bake", Stage: model.Cook, DurationS: 600}, {Name: "chill", Stage: model.Cool, DurationS: 600}, {Name: "shelf", Stage: model.HoldCold, DurationS: 600}}
+	from, to := 60.0, 5.0
+	for _, c := range []struct {
+		name    string
+		kind    *rules.Kind
+		stages  []*model.Stage
+		verdict rules.Verdict
+		first   int
+		startS  []float64
+		begins  float64
+		want    rules.Verdict
+	}{
+		{"cold already", rules.CoolWithin, []*model.Stage{model.Cool}, rules.NotApplicable, 1, []float64{0, 600}, 40, rules.CannotTell},
+		{"never warm", rules.CoolWithin, []*model.Stage{model.Cool}, rules.NotApplicable, 0, []float64{0, 600, 1200}, 40, rules.NotApplicable},
+		{"chilled before", rules.CoolWithin, []*model.Stage{model.Cool}, rules.NotApplicable, 1, []float64{0, 600}, 4, rules.NotApplicable},
+		{"hot still", rules.CoolWithin, []*model.Stage{model.Cool}, rules.Met, 1, []float64{0, 600}, 75, rules.Met},
+		{"the whole chain", rules.Band, nil, rules.Met, 0, []float64{0, 600, 1200, 1800}, 20, rules.Met},
+		{"its end lacks", rules.Band, nil, rules.Met, 0, []float64{0, 600, 1200}, 20, rules.CannotTell},
+		{"its start lacks", rules.Band, nil, rules.Met, 1, []float64{0, 600, 1200}, 20, rules.CannotTell},
+		{"another stage lacks", rules.StayBelow, []*model.Stage{model.Cool}, rules.Met, 1, []float64{0, 600}, 4, rules.Met},
+		{"not met all the same", rules.Band, nil, rules.NotMet, 1, []float64{0, 600, 1200}, 20, rules.NotMet},
+		{"a hold earned", rules.Hold, nil, rules.Met, 0, []float64{0, 600}, 75, rules.Met},
+	} {
+		f := &rules.Finding{Limit: &rules.Limit{Kind: c.kind, Stages: c.stages, FromC: &from, ToC: &to}, Verdict: c.verdict, Why: "It was so."}
+		unread(f, steps, &ran{first: c.first, startS: c.startS}, &model.Recording{C: []float64{c.begins}})
+		if f.Verdict != c.want {
+			t.Errorf("%s: %v (%s), want %v", c.name, f.Verdict, f.Why, c.want)
+		}
+	}
+}
