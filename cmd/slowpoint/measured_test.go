@@ -501,3 +501,33 @@ func TestUnread(t *testing.T) {
 		}
 	}
 }
+
+// TestDeviateOtherSteps: a step before the recorded one that took longer than planned is calculated as long as it was.
+func TestDeviateOtherSteps(t *testing.T) {
+	ends := func(starts ...workbook.Start) float64 {
+		r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 3600, coolTo(20, 3600))
+		kitchen := p.Steps[0]
+		kitchen.Name, kitchen.Stage, kitchen.DurationS = "carry", model.Rest, 600
+		p.Steps = []model.Step{kitchen, p.Steps[0]}
+		at, air := minutesOf(120, func(m int) float64 { return 2 + 0.01*float64(m%2) })
+		withAir(t, r, at, air, 0)
+		r.plan.Records[0].Starts = starts
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		v := r.deviate(p, out)
+		if v.History == nil {
+			t.Fatal(v.Judgement.Why, v.Records[0].Problems)
+		}
+		return v.History.EndS()
+	}
+	carry := workbook.Start{Step: "carry", Typed: "carry"}
+	bath := workbook.Start{Step: "bath", Elapsed: true, After: 40 * time.Minute, Typed: "bath 40 min"}
+	if got := ends(carry, bath); got != 2400+3600 {
+		t.Errorf("carried for 40 min: the chain ends after %g s", got)
+	}
+	if got := ends(carry); got != 600+3600 {
+		t.Errorf("carried as planned: the chain ends after %g s", got)
+	}
+}
