@@ -21,11 +21,12 @@ const simplifyK = 0.05
 type medium struct {
 	step      int
 	durationS float64
-	ended     bool           // somebody wrote down when the step ended, so that it does not end at a temperature
-	courses   []model.Course // as read, then the ends that the accuracy of the instrument, the simplification and each gap allow
-	manyGaps  bool           // more than were tried at every combination of their ends
-	timesS, c []float64      // the readings, s from the start of the step
-	errorK    float64        // by how much they may be off
+	ended     bool            // somebody wrote down when the step ended, so that it does not end at a temperature
+	courses   []model.Course  // as read, then the ends that the accuracy of the instrument, the simplification and each gap allow
+	others    map[int]float64 // how long other steps were, where the row says when they began and ended, s
+	manyGaps  bool            // more than were tried at every combination of their ends
+	timesS, c []float64       // the readings, s from the start of the step
+	errorK    float64         // by how much they may be off
 }
 
 // gapsTried is how many gaps of a medium are tried at every combination of their ends, mostRuns how many runs in all.
@@ -68,6 +69,13 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 		for _, s := range p.Spreads {
 			if s.Of.Name != "medium temperature" || !slices.ContainsFunc(media, func(m *medium) bool { return s.Step == m.step }) {
 				q.Spreads = append(q.Spreads, s)
+			}
+		}
+		for _, m := range media {
+			for k, s := range m.others {
+				if !slices.ContainsFunc(media, func(o *medium) bool { return o.step == k }) {
+					q.Steps[k].DurationS, q.Steps[k].UntilC = s, nil
+				}
 			}
 		}
 		for i, m := range media {
@@ -225,6 +233,7 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 		return nil, fault(rec, "What it measured", rec.Measured, st.Name+" has no surroundings with a temperature", "name another step")
 	}
 	from, to, known, last := 0.0, 0.0, -1, 0.0 // known: the last step up to the record's own whose beginning was written down
+	at := map[int]float64{}                    // by step
 	for n, s := range rec.Starts {
 		t, wrong := startOf(rec, log, &s)
 		if wrong != nil {
@@ -241,11 +250,18 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 		if s.End {
 			i = len(p.Steps)
 		}
+		at[i] = t
 		switch {
 		case i <= air.step:
 			from, known = t, i
 		case i == air.step+1:
 			to, air.ended = t, true
+		}
+	}
+	air.others = map[int]float64{}
+	for i, t := range at {
+		if u, ok := at[i+1]; ok && i != air.step {
+			air.others[i] = u - t
 		}
 	}
 	if len(rec.Starts) > 0 {

@@ -322,6 +322,9 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 			f.Cells = append(f.Cells, placeIn(log, re, lines, *f.AtS))
 		}
 	}
+	for i := range findings {
+		unread(&findings[i], p.Steps, way, re)
+	}
 	m.Judgement = rules.Conclude(findings, r.plan.Groups)
 	if out != nil {
 		r.compare(rec, p, out, way, re, media, m)
@@ -371,6 +374,32 @@ func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *
 		}
 	}
 	return re, lines
+}
+
+// unread turns what a record cannot show, for it lacks steps of the chain, into what cannot be told: at most some time in a range, when
+// there was more of it than was read; and a limit on cooling whose clock may have started before the first reading.
+func unread(f *rules.Finding, steps []model.Step, way *ran, re *model.Recording) {
+	l := f.Limit
+	cannot := func(why string) {
+		f.Verdict, f.MarginK, f.MarginS, f.Why = rules.CannotTell, nil, nil, why
+	}
+	begun := &steps[way.first]
+	if first := re.C[0]; l.Kind == rules.CoolWithin && f.Verdict == rules.NotApplicable && l.FromC != nil && l.ToC != nil && first <= *l.FromC+re.ErrorK && first > *l.ToC &&
+		(way.first > 0 || math.IsInf(begun.DurationS, 1)) && (begun.Stage == nil || !begun.Stage.Heats) {
+		cannot(fmt.Sprintf("The record begins in %s, when the place was at %.3g °C already: when its clock started was not read, so it cannot be told.", begun.Name, first))
+		return
+	}
+	switch l.Kind {
+	case rules.Band, rules.StayAbove, rules.StayBelow, rules.Outside, rules.Falling, rules.Duration:
+	default:
+		return
+	}
+	for i := range steps {
+		about := len(l.Stages) == 0 || slices.Contains(l.Stages, steps[i].Stage)
+		if about && f.Verdict == rules.Met && (i < way.first || i >= way.first+len(way.startS)-1) {
+			cannot(strings.TrimSuffix(f.Why, ".") + "; but the record holds nothing of " + steps[i].Name + ", which the limit is about too, so it cannot be told.")
+		}
+	}
 }
 
 // bordered is a recording with the last reading before its steps and the first after them, so that it is judged from the instants at which

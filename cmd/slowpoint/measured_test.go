@@ -522,3 +522,66 @@ func TestInexact(t *testing.T) {
 		}
 	}
 }
+
+// TestUnread: what was not recorded is not taken for met, and a clock that may have started before the first reading not for none.
+func TestUnread(t *testing.T) {
+	steps := []model.Step{{Name: "bake", Stage: model.Cook, DurationS: 600}, {Name: "chill", Stage: model.Cool, DurationS: 600}, {Name: "shelf", Stage: model.HoldCold, DurationS: 600}}
+	from, to := 60.0, 5.0
+	for _, c := range []struct {
+		name    string
+		kind    *rules.Kind
+		stages  []*model.Stage
+		verdict rules.Verdict
+		first   int
+		startS  []float64
+		begins  float64
+		want    rules.Verdict
+	}{
+		{"cold already", rules.CoolWithin, []*model.Stage{model.Cool}, rules.NotApplicable, 1, []float64{0, 600}, 40, rules.CannotTell},
+		{"never warm", rules.CoolWithin, []*model.Stage{model.Cool}, rules.NotApplicable, 0, []float64{0, 600, 1200}, 40, rules.NotApplicable},
+		{"chilled before", rules.CoolWithin, []*model.Stage{model.Cool}, rules.NotApplicable, 1, []float64{0, 600}, 4, rules.NotApplicable},
+		{"hot still", rules.CoolWithin, []*model.Stage{model.Cool}, rules.Met, 1, []float64{0, 600}, 75, rules.Met},
+		{"the whole chain", rules.Band, nil, rules.Met, 0, []float64{0, 600, 1200, 1800}, 20, rules.Met},
+		{"its end lacks", rules.Band, nil, rules.Met, 0, []float64{0, 600, 1200}, 20, rules.CannotTell},
+		{"its start lacks", rules.Band, nil, rules.Met, 1, []float64{0, 600, 1200}, 20, rules.CannotTell},
+		{"another stage lacks", rules.StayBelow, []*model.Stage{model.Cool}, rules.Met, 1, []float64{0, 600}, 4, rules.Met},
+		{"not met all the same", rules.Band, nil, rules.NotMet, 1, []float64{0, 600, 1200}, 20, rules.NotMet},
+		{"a hold earned", rules.Hold, nil, rules.Met, 0, []float64{0, 600}, 75, rules.Met},
+	} {
+		f := &rules.Finding{Limit: &rules.Limit{Kind: c.kind, Stages: c.stages, FromC: &from, ToC: &to}, Verdict: c.verdict, Why: "It was so."}
+		unread(f, steps, &ran{first: c.first, startS: c.startS}, &model.Recording{C: []float64{c.begins}})
+		if f.Verdict != c.want {
+			t.Errorf("%s: %v (%s), want %v", c.name, f.Verdict, f.Why, c.want)
+		}
+	}
+}
+
+// TestDeviateOtherSteps: a step before the recorded one that took longer than planned is calculated as long as it was.
+func TestDeviateOtherSteps(t *testing.T) {
+	ends := func(starts ...workbook.Start) float64 {
+		r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 3600, coolTo(20, 3600))
+		kitchen := p.Steps[0]
+		kitchen.Name, kitchen.Stage, kitchen.DurationS = "carry", model.Rest, 600
+		p.Steps = []model.Step{kitchen, p.Steps[0]}
+		at, air := minutesOf(120, func(m int) float64 { return 2 + 0.01*float64(m%2) })
+		withAir(t, r, at, air, 0)
+		r.plan.Records[0].Starts = starts
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		v := r.deviate(p, out)
+		if v.History == nil {
+			t.Fatal(v.Judgement.Why, v.Records[0].Problems)
+		}
+		return v.History.EndS()
+	}
+	carry := workbook.Start{Step: "carry", Typed: "carry"}
+	bath := workbook.Start{Step: "bath", Elapsed: true, After: 40 * time.Minute, Typed: "bath 40 min"}
+	if got := ends(carry, bath); got != 2400+3600 {
+		t.Errorf("carried for 40 min: the chain ends after %g s", got)
+	}
+	if got := ends(carry); got != 600+3600 {
+		t.Errorf("carried as planned: the chain ends after %g s", got)
+	}
+}
