@@ -844,12 +844,15 @@ func (h *Head) history(p *Product, d *deciding, size, ends float64, everything b
 	hist := d.history
 	axis := newTimeAxis(hist, d.part())
 	f := &chart{xName: axis.name, yName: say("axis temperature", h.degree()), x0: 0, x1: axis.end(), xTicks: axis.ticks, size: size, ends: ends}
-	times := chartTimes(hist)
+	times := p.aroundGaps(chartTimes(hist))
 	course := func(name string, on *model.History, at model.Place) {
 		c := make([]float64, len(times))
 		on.Course(at, times, c)
 		l := line{name: name}
 		for i := range times {
+			if on.Recorded && p.inGap(times[i]) {
+				c[i] = math.NaN()
+			}
 			l.x, l.y = append(l.x, axis.at(times[i])), append(l.y, h.shown(c[i]))
 		}
 		f.lines = append(f.lines, l)

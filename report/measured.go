@@ -81,10 +81,39 @@ type Fitted struct {
 func (m *Measured) asProduct(p *Product) *Product {
 	q := &Product{Product: p.Product, Steps: p.Steps, Family: p.Family, RecipeVersion: p.RecipeVersion, Batch: p.Batch, Process: p.Process,
 		History: m.History, Judgement: m.Judgement, From: p.From}
+	q.gaps = m.Gaps
 	if m.Against != nil {
 		q.predicted = &model.Trace{Point: model.Point{Name: say("line predicted")}, TimesS: m.Against.TimesS, C: m.Against.C}
 	}
 	return q
+}
+
+// ofGaps are the gaps of a record that stands in the place of a prediction.
+func (p *Product) ofGaps() [][2]float64 {
+	if p.gaps == nil && p.recorded() && len(p.Measured) == 1 {
+		return p.Measured[0].Gaps
+	}
+	return p.gaps
+}
+
+// inGap tells whether an instant lies within a gap.
+func (p *Product) inGap(t float64) bool {
+	return slices.ContainsFunc(p.ofGaps(), func(g [2]float64) bool { return t > g[0] && t < g[1] })
+}
+
+// aroundGaps adds the ends of gaps, and an instant within each, to rising times.
+func (p *Product) aroundGaps(times []float64) []float64 {
+	gaps := p.ofGaps()
+	if len(gaps) == 0 {
+		return times
+	}
+	out := append([]float64(nil), times...)
+	for _, g := range gaps {
+		out = append(out, g[0], (g[0]+g[1])/2, g[1])
+	}
+	slices.Sort(out)
+	end := times[len(times)-1]
+	return slices.DeleteFunc(slices.Compact(out), func(t float64) bool { return t < 0 || t > end })
 }
 
 // facts are what is known of a record, as pairs.

@@ -28,6 +28,7 @@ type Head struct {
 	LeftOut       []string      // products of the plan that this run was told to leave out
 	Known         []KnownAnswer // solved by this very program, in groups of one source
 	Products      int           // how many are calculated
+	Judged        bool          // a record is judged, and nothing calculated
 	MostPoints    int           // the largest number of points of a product, the centre counted: columns of the sheet Courses
 }
 
@@ -106,6 +107,7 @@ type Product struct {
 	From                                        map[cell.Ref]string // where the cells of the findings come from, as that of Readings; nil if nothing is known
 	Measured                                    []Measured          // records of the product; none: nothing was measured
 	Deviation                                   *Deviation          // the prediction with surroundings as they were recorded; nil: none were
+	gaps                                        [][2]float64        // of a record, s from the start of the chain: nothing is drawn there
 	predicted                                   *model.Trace        // of a record: the prediction at its place, for the chart
 	moved                                       string              // how the slowest place moves, once it was asked for
 	Lever                                       string              // the biggest lever in one sentence, for the page of the operator; "" if none was looked for

@@ -33,6 +33,8 @@ func NewText(w io.Writer, h *Head) *Text {
 
 // textWords are the texts that only report.txt has.
 var textWords = map[string]string{
+	"title record":    "slowpoint: recorded temperatures held against the limits that the user entered",
+	"what record":     "What was judged",
 	"title":           "slowpoint: calculated temperatures held against the limits that the user entered",
 	"order":           "This text says the same as the PDF reports. First the plan, then all products with their verdicts, then each product, then the known-answer cases and the words used.",
 	"courses":         "The whole courses of temperature are in results.xlsx and results.json.",
@@ -184,7 +186,11 @@ func (t *Text) Add(p *Product) error {
 // what describes the product.
 func (t *Text) what(x *sheet) {
 	p := x.p
-	t.heading(2, "what")
+	if t.h.Judged {
+		t.heading(2, "what record")
+	} else {
+		t.heading(2, "what")
+	}
 	for _, r := range [][2]string{{say("key family"), p.Family}, {say("key recipe"), p.RecipeVersion}, {say("key batch"), p.Batch}, {say("key process"), p.Process},
 		{say("key note"), p.Note}, {say("key equipment"), x.perStep(func(s *model.Step) string { return s.Equipment })},
 		{say("key load"), x.perStep(func(s *model.Step) string { return s.Load })}} {
@@ -401,7 +407,11 @@ func (t *Text) atEnd(x *sheet, sp *model.Span, told *told) []string {
 func (t *Text) basis(x *sheet) {
 	t.heading(2, "factors")
 	name := ""
-	for _, r := range x.factors() {
+	factors := x.factors()
+	if t.h.Judged { // they were not used
+		factors = nil
+	}
+	for _, r := range factors {
 		if r[0] != "" { // the table of the PDF says a step's name once
 			name = r[0]
 		}
@@ -411,7 +421,7 @@ func (t *Text) basis(x *sheet) {
 		}
 		t.item(s)
 	}
-	if rows := x.propertyRows(); len(rows) > 0 {
+	if rows := x.propertyRows(); len(rows) > 0 && !t.h.Judged {
 		t.plain(say("properties title") + ":")
 		food := ""
 		for _, r := range rows {
@@ -501,6 +511,9 @@ func (t *Text) Close() error {
 func (t *Text) front() {
 	h := t.h
 	title := textWords["title"]
+	if h.Judged {
+		title = textWords["title record"]
+	}
 	t.put(title + "\n" + strings.Repeat("=", len([]rune(title))) + "\n\n")
 	for _, key := range []string{"order", "courses", "rounding"} {
 		t.line(key)

@@ -415,11 +415,11 @@ func (r *runner) all() error {
 		r.rows, r.advice = append(r.rows, row), append(r.advice, adviceNotMet(d.product))
 		r.warned = append(r.warned, d.product.History.Warnings...)
 		for i := range d.product.Measured {
-			r.warned = append(r.warned, d.product.Measured[i].Problems...)
+			r.warn(d.product.Measured[i].Problems)
 		}
 		if v := d.product.Deviation; v != nil {
 			for i := range v.Records {
-				r.warned = append(r.warned, v.Records[i].Problems...)
+				r.warn(v.Records[i].Problems)
 			}
 		}
 		return nil
@@ -427,6 +427,7 @@ func (r *runner) all() error {
 	if err := r.each(true, add); err != nil {
 		return err
 	}
+	r.warn(r.unjudged())
 	r.progress.Finish()
 	for _, n := range r.refused { // after the last product, since reports read the head
 		r.head.NotCalculated = append(r.head.NotCalculated, n)
@@ -455,6 +456,15 @@ func (r *runner) all() error {
 			return r.each(false, func(d *done) error { return put(d.product) })
 		})
 	})
+}
+
+// warn notes problems once, though they may touch several products.
+func (r *runner) warn(es cell.Errors) {
+	for _, e := range es {
+		if !slices.Contains(r.warned, e) {
+			r.warned.Add(e)
+		}
+	}
 }
 
 // path is the place of a results file.

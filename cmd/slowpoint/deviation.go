@@ -29,6 +29,9 @@ type medium struct {
 	errorK    float64         // by how much they may be off
 }
 
+// sparseS is how far apart readings of a medium may lie that stand for a straight line, s; farther apart its ends are judged too.
+const sparseS = 300
+
 // gapsTried is how many gaps of a medium are tried at every combination of their ends, mostRuns how many runs in all.
 const gapsTried, mostRuns = 3, 64
 
@@ -39,6 +42,7 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 		return nil, nil
 	}
 	v = &report.Deviation{WithinK: simplifyK}
+	twice := false
 	for i := range r.plan.Records {
 		rec := &r.plan.Records[i]
 		if !rec.Sound || rec.Of != workbook.OfMedium || !slices.ContainsFunc(rec.Products, func(q *workbook.Product) bool { return q.Name == p.Name }) {
@@ -51,6 +55,7 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 		}
 		if k := slices.IndexFunc(media, func(b *medium) bool { return b.step == air.step }); k >= 0 {
 			v.Records[len(v.Records)-1].Problems.Add(*fault(rec, "What it measured", rec.Measured, "is recorded twice for "+p.Name, "keep one of the records"))
+			twice = true
 			continue
 		}
 		media = append(media, air)
@@ -60,6 +65,10 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 	}
 	if len(media) == 0 {
 		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "the record could not be used"}
+		return v, nil
+	}
+	if twice {
+		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "the surroundings of a step are recorded twice"}
 		return v, nil
 	}
 	run := func(which []int) (*report.Product, error) {
@@ -102,7 +111,6 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 	for i := range findings {
 		asRead = append(asRead, findings[i].Verdict)
 	}
-	open := slices.ContainsFunc(media, func(m *medium) bool { return len(m.courses) > 3 || m.manyGaps || p.Steps[m.step].RadiatingC != nil })
 	for _, which := range ends(media) {
 		bound, err := run(which)
 		if err != nil {
@@ -115,8 +123,8 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 			}
 		}
 	}
-	for i := range findings { // what may have been in a gap, or of walls that nobody logged, proves nothing
-		if f := &findings[i]; open && asRead[i] == rules.Met && f.Verdict == rules.NotMet {
+	for i := range findings { // what may have been beside the readings proves nothing
+		if f := &findings[i]; asRead[i] == rules.Met && f.Verdict == rules.NotMet {
 			f.Verdict, f.Why = rules.CannotTell, strings.TrimSuffix(f.Why, ".")+"; but that is at the unfavourable end of what the record leaves open, and by its readings alone it is met, so it cannot be told."
 		}
 	}
@@ -341,6 +349,16 @@ func (air *medium) fill(log *record.Log, steps []model.Step, from, to, errorK fl
 		for k := i; k <= j; k++ {
 			if t := log.TimesS[k] - from; t > 0 && t < to-from {
 				add(t, log.C[k])
+			}
+			if k+1 < len(log.TimesS) && bound != nil && log.TimesS[k+1]-log.TimesS[k] > sparseS { // it may have been at either all the time
+				end := min(log.C[k], log.C[k+1])
+				if shift > 0 {
+					end = max(log.C[k], log.C[k+1])
+				}
+				if _, lacking := gaps[k]; !lacking {
+					add(max(log.TimesS[k]-from, 0)+jump, end)
+					add(min(log.TimesS[k+1]-from, to-from)-jump, end)
+				}
 			}
 			if g, lacking := gaps[k]; lacking && bound != nil {
 				add(max(log.TimesS[k]-from, 0)+jump, bound(g))

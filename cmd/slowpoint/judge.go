@@ -149,7 +149,7 @@ func judgeAlone(cmd *cobra.Command, plan *workbook.Plan, rec *workbook.Record, p
 	}
 	plan.Problems = aboutLimits(plan) // those of the file come with its findings
 	head.Problems = plan.Problems
-	head.Products = 1
+	head.Products, head.Judged = 1, true
 	for _, k := range known() {
 		head.Known = append(head.Known, k.KnownAnswer)
 	}

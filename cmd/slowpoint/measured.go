@@ -242,6 +242,23 @@ func (r *runner) measure(p *workbook.Product, out *report.Product, media []*medi
 	}
 }
 
+// unjudged tells of records of products that cannot be calculated, beside which nothing stands.
+func (r *runner) unjudged() (es cell.Errors) {
+	if r.logs == nil || r.alone != nil {
+		return nil
+	}
+	for i := range r.plan.Records {
+		rec := &r.plan.Records[i]
+		refused := func(q *workbook.Product) bool {
+			return slices.ContainsFunc(r.plan.NotCalculated, func(n workbook.NotCalculated) bool { return n.Product == q.Name })
+		}
+		if rec.Sound && rec.Of.Food() && refused(rec.Products[0]) {
+			es.Add(cell.Error{At: rec.At, Level: cell.Warning, Msg: fmt.Sprintf("The record %s is of a product that cannot be calculated, and was not judged", rec.Name), Hint: "judge it alone: slowpoint judge FILE --limits PLAN --like \"" + rec.Name + "\""})
+		}
+	}
+	return es
+}
+
 // lengthsOf are how long the steps are: in the prediction where there is one, for steps may end at a temperature.
 func lengthsOf(steps []model.Step, h *model.History) []float64 {
 	out := make([]float64, len(steps))
@@ -325,6 +342,7 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 	for i := range findings {
 		unread(&findings[i], p.Steps, way, re)
 	}
+	stoppedEarly(findings, rec, p.Steps[way.first+len(re.Spans):])
 	m.Judgement = rules.Conclude(findings, r.plan.Groups)
 	if out != nil {
 		r.compare(rec, p, out, way, re, media, m)
@@ -334,6 +352,26 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 
 // tiny is below what any logger's clock tells, s.
 const tiny = 1e-6
+
+// stoppedEarly turns limits on stages that a record does not reach into ones that cannot be told, unless its row says when it ended: a logger that
+// stopped early shows nothing of what came after.
+func stoppedEarly(findings []rules.Finding, rec *workbook.Record, after []model.Step) {
+	if slices.ContainsFunc(rec.Starts, func(s workbook.Start) bool { return s.End }) {
+		return
+	}
+	for i := range findings {
+		f := &findings[i]
+		if f.Verdict != rules.NotApplicable || f.Limit == nil {
+			continue
+		}
+		for _, st := range after {
+			if st.Stage != nil && (slices.Contains(f.Limit.Stages, st.Stage) || f.Limit.Then == st.Stage) {
+				f.Verdict, f.Why = rules.CannotTell, fmt.Sprintf("The record ends before the step %s, so it cannot be told; where that was meant, write its end in Starts at.", st.Name)
+				break
+			}
+		}
+	}
+}
 
 // recording is what a log says of a product on the clock of its chain, and the line of the file of each reading.
 func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *ran, m *report.Measured) (re *model.Recording, lines []int32) {

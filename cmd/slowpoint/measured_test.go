@@ -570,7 +570,7 @@ func TestDeviateOtherSteps(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		v := r.deviate(p, out)
+		v, _ := r.deviate(p, out)
 		if v.History == nil {
 			t.Fatal(v.Judgement.Why, v.Records[0].Problems)
 		}
@@ -583,5 +583,67 @@ func TestDeviateOtherSteps(t *testing.T) {
 	}
 	if got := ends(carry); got != 600+3600 {
 		t.Errorf("carried as planned: the chain ends after %g s", got)
+	}
+}
+
+// TestStoppedEarly: a logger that stopped before the chiller shows nothing of the chiller, unless somebody wrote that it was meant to end there.
+func TestStoppedEarly(t *testing.T) {
+	chill := []model.Step{{Name: "Chill", Stage: model.Cool}}
+	for _, c := range []struct {
+		name   string
+		starts []workbook.Start
+		stage  *model.Stage
+		want   rules.Verdict
+	}{
+		{"stopped", nil, model.Cool, rules.CannotTell},
+		{"meant to end", []workbook.Start{{Typed: "Oven"}, {End: true}}, model.Cool, rules.NotApplicable},
+		{"of a stage that the chain lacks", nil, model.HoldHot, rules.NotApplicable},
+	} {
+		fs := []rules.Finding{{Verdict: rules.NotApplicable, Limit: &rules.Limit{Stages: []*model.Stage{c.stage}}}}
+		stoppedEarly(fs, &workbook.Record{Starts: c.starts}, chill)
+		if fs[0].Verdict != c.want {
+			t.Errorf("%s: %v, want %v", c.name, fs[0].Verdict, c.want)
+		}
+	}
+}
+
+// TestDeviateSparse: between readings that are an hour apart the air may have been at the warmer of the two all the time.
+func TestDeviateSparse(t *testing.T) {
+	margin := func(every int) float64 {
+		r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 2*3600, coolTo(8, 2*3600))
+		var at, air []float64
+		for m := 0; m <= 120; m += every {
+			at, air = append(at, float64(m)), append(air, 6-4*float64(m)/120) // it falls from 6 to 2 °C
+		}
+		withAir(t, r, at, air, 0)
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		v, _ := r.deviate(p, out)
+		if len(v.Judgement.Findings) != 1 {
+			t.Fatal(v.Judgement.Why, v.Records[0].Problems)
+		}
+		return *v.Judgement.Findings[0].MarginK
+	}
+	if dense, sparse := margin(1), margin(60); sparse > dense-0.5 {
+		t.Errorf("readings every hour leave a margin of %.2f K, every minute %.2f K", sparse, dense)
+	}
+}
+
+// TestDeviateTwice: of two records of one medium nobody knows which holds.
+func TestDeviateTwice(t *testing.T) {
+	r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 2*3600, coolTo(8, 2*3600))
+	at, air := minutesOf(125, func(m int) float64 { return 2 + 0.01*float64(m%2) })
+	withAir(t, r, at, air, 0)
+	r.plan.Records = append(r.plan.Records, r.plan.Records[0])
+	r.logs = newLogs(r.plan, r.logs.folder, time.Time{})
+	out, err := r.judged(p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	v, media := r.deviate(p, out)
+	if v.Judgement.Verdict != rules.CannotTell || len(media) != 0 || v.Records[1].Problems.Faults() != 1 {
+		t.Errorf("%v %v", v.Judgement, v.Records[1].Problems)
 	}
 }

@@ -54,6 +54,8 @@ func ReadWith(name string, given Given) (*Plan, *Record, error) {
 		if r.grids["Limits"] == nil {
 			return nil, nil, fmt.Errorf("%s: it has no sheet Limits, so there is nothing to judge by", name)
 		}
+	} else if r.grids["Products"] == nil && r.grids["Limits"] != nil {
+		return nil, nil, fmt.Errorf("%s: it has limits and no products: say what was measured with --stages, as --stages \"cook 09:12; cool 11:20\"", name)
 	} else if err := r.isPlan(); err != nil {
 		return nil, nil, fmt.Errorf("%s: %w", name, err)
 	}
@@ -92,7 +94,11 @@ func (given *Given) fill(p *Plan) error {
 		}
 		return nil
 	}
-	return fmt.Errorf("%q is not a row of the sheet Records%s", given.Like, meant(given.Like, names))
+	known := "it has none"
+	if len(names) > 0 {
+		known = "its rows are " + and(names[:min(len(names), 12)])
+	}
+	return fmt.Errorf("%q is not a row of the sheet Records%s; %s", given.Like, meant(given.Like, names), known)
 }
 
 // loosely makes a product of nothing but stages, for records of food that no plan describes.

@@ -109,6 +109,9 @@ func (r *reader) readRecords() {
 		}
 		rec.readings, rec.Sound = l.readings, l.Sound() && len(of) > 0
 		r.plan.Records = append(r.plan.Records, rec)
+		r.problems = slices.DeleteFunc(r.problems, func(e cell.Error) bool { // a file of a folder of CSV that is a logger's is no sheet that somebody misnamed
+			return e.Msg == unknownSheet.msg && e.Level == cell.Warning && Key(e.At.Sheet+".csv") == Key(rec.File)
+		})
 	}
 }
 
