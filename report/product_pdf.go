@@ -1071,7 +1071,7 @@ func (x *sheet) measured() {
 	}
 	d.heading(say("measured title"), 0, 43)
 	if !rec && len(p.Measured) > 0 {
-		d.text(say("measured note"))
+		d.text(say("measured beside"))
 		x.records()
 		return
 	}

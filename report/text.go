@@ -252,7 +252,7 @@ func (t *Text) records(x *sheet) {
 		return
 	}
 	t.heading(2, "measured")
-	t.plain(say("measured note"))
+	t.plain(say("measured beside"))
 	for i := range x.p.Measured {
 		m := &x.p.Measured[i]
 		t.heading(3, "record", m.Name)

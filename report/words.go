@@ -404,6 +404,7 @@ var words = map[string]string{
 	"fitted typed":              ", taken in the plan %s",
 	"fitted not":                "Nothing was fitted to this record: %s.",
 	"and more":                  "and %d more",
+	"measured beside":           "The readings in this part come from the records that were given; nothing in them was calculated or smoothed. The prediction that stands beside them, and what was fitted, are named as such.",
 	"measured note":             "Everything in this part comes from the record that was given. Nothing in it was calculated or smoothed.",
 	"no medium":                 "none",
 	"joint":                     "%d and %d",
