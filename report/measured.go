@@ -63,7 +63,6 @@ type Against struct {
 	SlowestK  float64 // of a record of a named point: how much slower the slowest place was at the least favourable instant, by prediction
 	SlowestS  float64
 	Fitted    []Fitted
-	Correl    float64
 	FittedRMS float64 // with the fitted values
 	NotFitted string  // why nothing was fitted though it was asked for
 }
