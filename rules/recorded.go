@@ -275,9 +275,8 @@ func (t *track) steady(l *Limit, p path, verdict Verdict) bool {
 			p.c[i] += k
 		}
 	}
-	steady := true
 	shift(-t.r.ErrorK)
-	steady = judgeOne(l, exact).Verdict == verdict
+	steady := judgeOne(l, exact).Verdict == verdict
 	shift(2 * t.r.ErrorK)
 	steady = steady && judgeOne(l, exact).Verdict == verdict
 	shift(-t.r.ErrorK)
