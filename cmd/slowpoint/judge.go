@@ -87,7 +87,7 @@ func judge(cmd *cobra.Command, path, limits string, given workbook.Given, o *che
 	}
 	name := filepath.Base(path)
 	given.Cells["Record"], given.Cells["File"] = strings.TrimSuffix(name, filepath.Ext(name)), name
-	if !filepath.IsLocal(name) || strings.ContainsAny(name, `:\\`) {
+	if !filepath.IsLocal(name) || strings.ContainsAny(name, `:\`) {
 		given.Cells["File"] = "record"
 	}
 	if given.Cells["What it measured"] == "" && given.Like == "" {
