@@ -60,7 +60,7 @@ func settingOf(rec *workbook.Record, path string, today time.Time) record.Settin
 	return s
 }
 
-// run is the steps of a chain as a record has them.
+// ran is the steps of a chain as a record has them.
 type ran struct {
 	first  int       // the first step that it covers
 	startS []float64 // of each covered step, s from the first reading; and behind the last its end

@@ -292,7 +292,7 @@ func (t *taker) usual() float64 {
 	return median(steps)
 }
 
-// shown writes a time as it was understood.
+// timeAt writes a time as it was understood.
 func (t *taker) timeAt(i int) string { return t.r.shown(t.form, t.secs[i]) }
 
 // shown writes an instant: with its date, as a clock, or as the time since the start.
