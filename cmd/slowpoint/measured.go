@@ -64,7 +64,6 @@ func settingOf(rec *workbook.Record, path string, today time.Time) record.Settin
 type ran struct {
 	first  int       // the first step that it covers
 	startS []float64 // of each covered step, s from the first reading; and behind the last its end
-	shownS float64   // time of the first reading on the clock of the chain
 }
 
 // fault is a mistake in a cell of a record's row.
@@ -127,7 +126,6 @@ func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths 
 		t += lengths[i]
 	}
 	r.startS = append(r.startS, end)
-	r.shownS = -r.startS[0]
 	if len(r.startS) < 2 {
 		return nil, fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it")
 	}
