@@ -104,7 +104,7 @@ func (x *sheet) deviated() {
 		d.pairs(m.facts(x.head), 34)
 		x.echo(m)
 	}
-	if v.WithinK > 0 {
+	if v.History != nil {
 		d.text(say("deviated spread", three(v.WithinK)))
 	}
 	if v.History != nil {

@@ -303,7 +303,9 @@ func (t *Text) deviated(x *sheet) {
 			}
 		}
 	}
-	t.plain(say("deviated spread", three(v.WithinK)))
+	if v.History != nil {
+		t.plain(say("deviated spread", three(v.WithinK)))
+	}
 }
 
 // drivers writes what drives each margin.

@@ -131,7 +131,7 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 	for _, m := range media {
 		for i := range findings {
 			if f := &findings[i]; m.manyGaps && f.Verdict == rules.Met {
-				f.Verdict, f.Why = rules.CannotTell, "It is met at the ends of all gaps together, and there are too many to try them apart."
+				f.Verdict, f.Why = rules.CannotTell, "It is met at the ends of all records and gaps together, and there are too many to try them apart."
 			}
 		}
 	}

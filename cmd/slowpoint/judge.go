@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"path/filepath"
+	"slices"
 	"strings"
 	"sync"
 
@@ -121,12 +122,42 @@ func judge(cmd *cobra.Command, path, limits string, given workbook.Given, o *che
 		rec.Cells["Starts at"] = cell.Ref{Sheet: "--stages"}
 	}
 	p := rec.Products[0]
+	if es := chainFaults(plan, p); es.Faults() > 0 {
+		tellProblems(cmd.ErrOrStderr(), es)
+		return &failure{exitInput, errors.New("the steps of the product are not known for sure; mend them, or say the stages with --stages")}
+	}
 	plan.Products, plan.NotCalculated = []workbook.Product{*p}, nil
 	if o.out == "" {
 		o.out = strings.TrimSuffix(path, filepath.Ext(path)) + "-results"
 	}
 	return judgeAlone(cmd, plan, rec, path, o, files)
 }
+
+// chainFaults are the faults that leave open which steps a product goes through, and how long they are: a stage that is lost would be a limit
+// that does not apply. What only a calculation needs is left aside.
+func chainFaults(plan *workbook.Plan, p *workbook.Product) (es cell.Errors) {
+	for _, n := range plan.NotCalculated {
+		if n.Product != p.Name {
+			continue
+		}
+		for _, e := range n.Because {
+			switch {
+			case e.Level != cell.Fault:
+			case e.At.Sheet == "Products" && (e.Field == "Process" || e.Field == "Product"), e.At.Sheet != "Products" && slices.Contains(ofChain, e.Field):
+				es.Add(e)
+			}
+		}
+	}
+	for i := range p.Steps {
+		if st := &p.Steps[i]; st.Stage == nil {
+			es.Add(cell.Error{At: st.At, Field: "Stage", Msg: "The stage of " + st.Name + " is not known", Hint: "correct it, or say the stages with --stages"})
+		}
+	}
+	return es
+}
+
+// ofChain are the headings of Steps that say which steps there are and how long; "" is a whole row or sheet.
+var ofChain = []string{"", "Process", "Product", "Step", "Stage", "Duration", "Until slowest point reaches"}
 
 // judgeAlone reads the file, judges it and writes the report.
 func judgeAlone(cmd *cobra.Command, plan *workbook.Plan, rec *workbook.Record, path string, o *checkOptions, files *shelf) error {

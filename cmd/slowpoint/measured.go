@@ -123,6 +123,9 @@ func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths 
 			break
 		}
 		r.startS = append(r.startS, t)
+		if _, known := given[i+1]; !known && i+1 < len(steps) && !(lengths[i] > 0) {
+			return nil, fault(rec, "Starts at", "", fmt.Sprintf("does not say when %s began, and how long %s was is not known without", steps[i+1].Name, steps[i].Name), "write when it began: Oven 09:12; Rest 11:02; Chill 11:20; or the end")
+		}
 		t += lengths[i]
 	}
 	r.startS = append(r.startS, end)
@@ -248,7 +251,8 @@ func (r *runner) unjudged() (es cell.Errors) {
 	for i := range r.plan.Records {
 		rec := &r.plan.Records[i]
 		refused := func(q *workbook.Product) bool {
-			return slices.ContainsFunc(r.plan.NotCalculated, func(n workbook.NotCalculated) bool { return n.Product == q.Name })
+			return slices.ContainsFunc(r.plan.NotCalculated, func(n workbook.NotCalculated) bool { return n.Product == q.Name }) ||
+				slices.ContainsFunc(r.refused, func(n report.NotCalculated) bool { return n.Product == q.Name })
 		}
 		if rec.Sound && rec.Of.Food() && refused(rec.Products[0]) {
 			es.Add(cell.Error{At: rec.At, Level: cell.Warning, Msg: fmt.Sprintf("The record %s is of a product that cannot be calculated, and was not judged", rec.Name), Hint: "judge it alone: slowpoint judge FILE --limits PLAN --like \"" + rec.Name + "\""})
@@ -257,11 +261,15 @@ func (r *runner) unjudged() (es cell.Errors) {
 	return es
 }
 
-// lengthsOf are how long the steps are: in the prediction where there is one, for steps may end at a temperature.
+// lengthsOf are how long the steps are, s: in the prediction where there is one, for steps may end at a temperature; NaN for those that do
+// where there is none.
 func lengthsOf(steps []model.Step, h *model.History) []float64 {
 	out := make([]float64, len(steps))
 	for i := range steps {
 		out[i] = steps[i].DurationS
+		if h == nil && steps[i].UntilC != nil {
+			out[i] = math.NaN()
+		}
 		if h != nil && !h.Recorded && i < len(h.Spans) {
 			out[i] = h.Spans[i].EndS - h.Spans[i].StartS
 		}

@@ -60,6 +60,14 @@ func TestLaidOut(t *testing.T) {
 			t.Errorf("%s: from step %d at %v, want %d at %v", c.name, got.first, got.startS, c.first, c.want)
 		}
 	}
+	// the clocks that people write are those of the file, whatever its zone
+	zoned := &record.Log{Start: time.Date(2026, 1, 19, 9, 0, 0, 0, time.FixedZone("UTC+01:00", 3600)), Dated: true, TimesS: []float64{0, 7200}}
+	if got, wrong := laidOut(&workbook.Record{Starts: []workbook.Start{{Step: "Oven", Clock: true, After: clock(9, 10), Typed: "Oven 09:10"}}}, zoned, steps, lengths); wrong != nil || got.startS[0] != 600 {
+		t.Errorf("%v %v, want a start after 600 s", got, wrong)
+	}
+	if _, wrong := laidOut(&workbook.Record{}, zoned, steps, []float64{math.NaN(), 120, 1200}); wrong == nil || !strings.HasPrefix(wrong.Msg, "does not say when Rest began") {
+		t.Errorf("a step of no known length: %v", wrong)
+	}
 	if _, wrong := laidOut(&workbook.Record{Starts: []workbook.Start{{Clock: true, Typed: "09:00"}}}, &record.Log{TimesS: []float64{0, 60}}, steps, lengths); wrong == nil {
 		t.Error("a clock is taken for a file that has none")
 	}

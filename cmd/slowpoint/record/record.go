@@ -40,7 +40,7 @@ type Log struct {
 	TimeHead     string    // headings as they stand in the file
 	Head         string    //
 	Unit         string    // as read or stated: °C, °F, K
-	Start        time.Time // of the first reading, in UTC if Zone was stated; the zero time if the file has no clock
+	Start        time.Time // of the first reading, in the file's own clock and zone; the zero time if the file has no clock
 	Dated        bool      // Start has a date; otherwise only its clock counts (the date is that of no day: 2000-01-01)
 	TimesS       []float64 // s from the first reading, rising strictly
 	C            []float64 // °C, corrected
@@ -235,6 +235,9 @@ func (r *reader) make(t *taker) {
 	switch {
 	case t.form == dateStamp:
 		log.Start, log.Dated = instant(start), true
+		if r.utc { // in the file's own clock, which people go by
+			log.Start = log.Start.In(time.FixedZone(offsetName(int32(r.east)), int(r.east)))
+		}
 	case r.clock:
 		log.Start = time.Date(2000, 1, 1, 0, 0, 0, 0, time.UTC).Add(time.Duration(math.Round(start*1e6)) * time.Microsecond)
 	}

@@ -64,7 +64,7 @@ var ticks = []*tick{
 	{"mm:ss", 1, minutes, []string{"mm:ss", "m:ss", "[mm]:ss", "[m]:ss", "min:s", "min:sec", "m:s"}},
 	{"h:mm:ss", 1, spans, []string{"h:mm:ss", "hh:mm:ss", "[h]:mm:ss", "[hh]:mm:ss", "h:m:s", "h:min:s"}},
 	{"clock", 1, ofDay, []string{"clock", "time of day"}},
-	{"serial", 86400, serials, []string{"serial", "excel serial"}},
+	{"serial", 86400, serials, []string{"serial"}},
 	{"unix", 1, epoch, []string{"unix", "unix s", "epoch", "epoch s"}},
 }
 

@@ -346,7 +346,7 @@ var Sheets = []*Sheet{
 		{Heading: "Time column", Needed: true, Help: "its heading in the file, or its letter; a date and a clock as Date + Time; a unit that the file does not say in brackets: Elapsed (min)"},
 		{Heading: "Temperature column", Needed: true, Help: "its heading in the file, or its letter; a unit that the file does not say in brackets: Probe 1 (°C)"},
 		{Heading: "What it measured", Needed: true, Choices: []string{"slowest point", "centre", "surface", "other place"}, Free: true, Help: "slowest point, centre, surface, medium of STEP, a name of the sheet Points, or other place"},
-		{Heading: "Starts at", Help: "the step of the first reading, or when steps began and the last ended: Oven 09:12; Chill 11:20; end 13:00. Blank: the first step, at the first reading"},
+		{Heading: "Starts at", Help: "the step of the first reading, or when steps began and the last ended: Oven 09:12; Chill 11:20; end 13:00. Blank: the first step, or of a medium its own, at the first reading"},
 		{Heading: "Date order", Choices: planChoices["Date order"], Help: "of the file's dates, where they fit two orders"},
 		{Heading: "Time zone", Help: "of the file's clock, as UTC+01:00; blank: not known"},
 		{Heading: "Missing words", Help: "further words of this logger for a reading that is missing, divided by commas"},
