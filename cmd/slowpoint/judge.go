@@ -47,7 +47,7 @@ where they differ the verdict is cannot tell.
 A logger is set up once as a row of the plan's sheet Records and used again with --like.
 Exit codes: 0 every must limit is met; 1 one is not, or cannot be told; 2 the file or the plan could not be used; 3 the results could not
 be written, or a fault of the program.`,
-		Example: "  slowpoint judge probe.csv --limits plan.xlsx --product \"Turkey roll\" --starts \"simmer 09:12; rest 11:25; ice bath 11:40; end 15:00\"\n" +
+		Example: "  slowpoint judge probe.csv --limits plan.xlsx --product \"Turkey roll\" --starts \"simmer 09:12; rest 11:25; ice bath 11:40; store 14:50; end 15:00\"\n" +
 			"  slowpoint judge probe.csv --limits plan.xlsx --stages \"cook 09:12; cool 11:40; end 15:00\"", Args: cobra.ExactArgs(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			given := workbook.Given{Cells: map[string]string{}, Like: like, Stages: stages}

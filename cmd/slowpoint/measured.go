@@ -124,7 +124,7 @@ func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths 
 		}
 		r.startS = append(r.startS, t)
 		if _, known := given[i+1]; !known && i+1 < len(steps) && !(lengths[i] > 0) {
-			return nil, fault(rec, "Starts at", "", fmt.Sprintf("does not say when %s began, and how long %s was is not known without", steps[i+1].Name, steps[i].Name), "write when it began: Oven 09:12; Rest 11:02; Chill 11:20; or the end")
+			return nil, fault(rec, "Starts at", "", fmt.Sprintf("does not say when %s began, and how long %s was is not known without", steps[i+1].Name, steps[i].Name), "write when it began: Oven 09:12; Rest 11:02; Chill 11:20")
 		}
 		t += lengths[i]
 	}
