@@ -19,6 +19,8 @@ const simplifyK = 0.05
 
 // medium is the record of the surroundings of a step, ready to be calculated with.
 type medium struct {
+	of        *workbook.Record
+	nth       int // of the records of the product's surroundings
 	step      int
 	durationS float64
 	ended     bool            // somebody wrote down when the step ended, so that it does not end at a temperature
@@ -42,7 +44,58 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 		return nil, nil
 	}
 	v = &report.Deviation{WithinK: simplifyK}
-	twice := false
+	cannot := func(why string) { v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: why} }
+	media, open := r.media(p, out, v)
+	switch {
+	case len(v.Records) == 0:
+		return nil, nil
+	case len(media) == 0:
+		cannot("the record could not be used")
+		return v, nil
+	case open != "":
+		cannot(open)
+		return v, nil
+	}
+	after, err := r.inMedia(p, media, make([]int, len(media)))
+	if err != nil {
+		cannot("it cannot be calculated: " + oneLine(err))
+		return v, media
+	}
+	v.History = after.History
+	findings := after.Judgement.Findings
+	var asRead []rules.Verdict
+	for i := range findings {
+		asRead = append(asRead, findings[i].Verdict)
+	}
+	for _, which := range ends(media) {
+		bound, err := r.inMedia(p, media, which)
+		if err != nil {
+			cannot("its bounds cannot be calculated: " + oneLine(err))
+			return v, media
+		}
+		for i := range findings {
+			if i < len(bound.Judgement.Findings) && rules.Worse(&bound.Judgement.Findings[i], &findings[i]) {
+				findings[i] = bound.Judgement.Findings[i]
+			}
+		}
+	}
+	manyGaps := slices.ContainsFunc(media, func(m *medium) bool { return m.manyGaps })
+	for i := range findings { // what may have been beside the readings proves nothing
+		switch f := &findings[i]; {
+		case asRead[i] == rules.Met && f.Verdict == rules.NotMet:
+			f.Verdict, f.Why = rules.CannotTell, strings.TrimSuffix(f.Why, ".")+"; but that is at the unfavourable end of what the record leaves open, and by its readings alone it is met, so it cannot be told."
+		case manyGaps && f.Verdict == rules.Met:
+			f.Verdict, f.Why = rules.CannotTell, "It is met at the ends of all records and gaps together, and there are too many to try them apart."
+		}
+		findings[i].Run = ""
+	}
+	v.Judgement = rules.Conclude(findings, r.plan.Groups)
+	return v, media
+}
+
+// media reads the records of the surroundings of a product into v, and gives those that can be used. open says why nobody can tell by them
+// what the surroundings were; "" if that is plain.
+func (r *runner) media(p *workbook.Product, out *report.Product, v *report.Deviation) (media []*medium, open string) {
 	for i := range r.plan.Records {
 		rec := &r.plan.Records[i]
 		if !rec.Sound || rec.Of != workbook.OfMedium || !slices.ContainsFunc(rec.Products, func(q *workbook.Product) bool { return q.Name == p.Name }) {
@@ -53,93 +106,99 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 		if air == nil {
 			continue
 		}
+		air.of, air.nth = rec, len(v.Records)-1
 		if k := slices.IndexFunc(media, func(b *medium) bool { return b.step == air.step }); k >= 0 {
-			v.Records[len(v.Records)-1].Problems.Add(*fault(rec, "What it measured", rec.Measured, "is recorded twice for "+p.Name, "keep one of the records"))
-			twice = true
+			v.Records[air.nth].Problems.Add(*fault(rec, "What it measured", rec.Measured, "is recorded twice for "+p.Name+": by "+media[k].named()+" too", "keep one of the records"))
+			open = fmt.Sprintf("the surroundings of %s are recorded twice, by %s and %s", p.Steps[air.step].Name, media[k].named(), air.named())
 			continue
 		}
 		media = append(media, air)
 	}
-	if len(v.Records) == 0 {
-		return nil, nil
+	if open != "" {
+		return media, open
 	}
-	if len(media) == 0 {
-		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "the record could not be used"}
-		return v, nil
+	for k := range p.Steps {
+		if a, b, wrong := settle(media, k, p.Steps[k].Name); wrong != nil {
+			v.Records[b.nth].Problems.Add(*wrong)
+			return media, fmt.Sprintf("%s and %s do not agree on how long %s was", a.named(), b.named(), p.Steps[k].Name)
+		}
 	}
-	if twice {
-		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "the surroundings of a step are recorded twice"}
-		return v, nil
-	}
-	run := func(which []int) (*report.Product, error) {
-		q := *p
-		q.Steps = append([]model.Step(nil), p.Steps...)
-		q.Spreads = nil
-		for _, s := range p.Spreads {
-			if s.Of.Name != "medium temperature" || !slices.ContainsFunc(media, func(m *medium) bool { return s.Step == m.step }) {
-				q.Spreads = append(q.Spreads, s)
+	return media, ""
+}
+
+// named is the record of a medium, with its row.
+func (m *medium) named() string { return fmt.Sprintf("%s (%s)", m.of.Name, m.of.At) }
+
+// sameLengthS is how far apart two lengths of one step may lie that are the same, s.
+const sameLengthS = 1
+
+// settle looks at how long a step was by each record that says so. Where two differ, wrong says it of the later, b. The record of the step's own
+// surroundings takes the length from another one that says it where it does not itself, as far as its readings were taken.
+func settle(media []*medium, step int, name string) (a, b *medium, wrong *cell.Error) {
+	var own, says *medium
+	long := 0.0
+	for _, m := range media {
+		s, said := m.others[step]
+		if m.step == step {
+			if own = m; m.ended {
+				s, said = m.durationS, true
 			}
 		}
-		for _, m := range media {
-			for k, s := range m.others {
-				if !slices.ContainsFunc(media, func(o *medium) bool { return o.step == k }) {
-					q.Steps[k].DurationS, q.Steps[k].UntilC = s, nil
-				}
-			}
-		}
-		for i, m := range media {
-			st := &q.Steps[m.step]
-			if st.RadiatingC != nil {
-				c := *st.RadiatingC + m.walls(which[i], st.Medium)
-				st.RadiatingC = &c
-			}
-			st.Medium, st.Measured, st.DurationS = m.courses[which[i]], true, m.durationS
-			if m.ended {
-				st.UntilC = nil
-			}
-		}
-		return r.judgedBy(&q, model.Options{})
-	}
-	after, err := run(make([]int, len(media)))
-	if err != nil {
-		v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "it cannot be calculated: " + oneLine(err)}
-		return v, media
-	}
-	v.History = after.History
-	findings := after.Judgement.Findings
-	var asRead []rules.Verdict
-	for i := range findings {
-		asRead = append(asRead, findings[i].Verdict)
-	}
-	for _, which := range ends(media) {
-		bound, err := run(which)
-		if err != nil {
-			v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: "its bounds cannot be calculated: " + oneLine(err)}
-			return v, media
-		}
-		for i := range findings {
-			if i < len(bound.Judgement.Findings) && rules.Worse(&bound.Judgement.Findings[i], &findings[i]) {
-				findings[i] = bound.Judgement.Findings[i]
-			}
+		switch {
+		case said && says == nil:
+			says, long = m, s
+		case said && math.Abs(s-long) > sameLengthS:
+			return says, m, fault(m.of, "Starts at", "", fmt.Sprintf("%s lasted %s by it, and %s by %s", name, report.Duration(s), report.Duration(long), says.named()), "correct Starts at in one of the two rows")
 		}
 	}
-	for i := range findings { // what may have been beside the readings proves nothing
-		if f := &findings[i]; asRead[i] == rules.Met && f.Verdict == rules.NotMet {
-			f.Verdict, f.Why = rules.CannotTell, strings.TrimSuffix(f.Why, ".")+"; but that is at the unfavourable end of what the record leaves open, and by its readings alone it is met, so it cannot be told."
+	if own == nil || own.ended || says == nil {
+		return nil, nil, nil
+	}
+	if long > own.durationS+sameLengthS {
+		a, b = own, says
+		if a.nth > b.nth {
+			a, b = b, a
 		}
+		return a, b, fault(b.of, "Starts at", "", fmt.Sprintf("%s lasted %s by %s, and %s, which does not say when it ended, is taken for %s", name, report.Duration(long), says.named(), own.named(), report.Duration(own.durationS)),
+			"write in Starts at of "+own.of.Name+" when the step ended")
+	}
+	own.durationS, own.ended = min(long, own.durationS), true
+	return nil, nil, nil
+}
+
+// inMedia judges a product in recorded surroundings; which are the courses that are taken, one of each.
+func (r *runner) inMedia(p *workbook.Product, media []*medium, which []int) (*report.Product, error) {
+	q := *p
+	q.Steps = append([]model.Step(nil), p.Steps...)
+	q.Spreads = nil
+	for _, s := range p.Spreads {
+		if s.Of.Name != "medium temperature" || !slices.ContainsFunc(media, func(m *medium) bool { return s.Step == m.step }) {
+			q.Spreads = append(q.Spreads, s)
+		}
+	}
+	for i, m := range media {
+		for k, s := range m.others { // where several say it, they agree
+			q.Steps[k].DurationS, q.Steps[k].UntilC = s, nil
+		}
+		m.into(&q.Steps[m.step], which[i])
 	}
 	for _, m := range media {
-		for i := range findings {
-			if f := &findings[i]; m.manyGaps && f.Verdict == rules.Met {
-				f.Verdict, f.Why = rules.CannotTell, "It is met at the ends of all records and gaps together, and there are too many to try them apart."
-			}
+		st := &q.Steps[m.step]
+		st.DurationS = m.durationS
+		if m.ended {
+			st.UntilC = nil
 		}
 	}
-	for i := range findings {
-		findings[i].Run = ""
+	return r.judgedBy(&q, model.Options{})
+}
+
+// into puts a course of the record in the place of the planned surroundings of a step. Its walls are shifted alike.
+func (m *medium) into(st *model.Step, which int) {
+	if st.RadiatingC != nil {
+		c := *st.RadiatingC + m.walls(which, st.Medium)
+		st.RadiatingC = &c
 	}
-	v.Judgement = rules.Conclude(findings, r.plan.Groups)
-	return v, media
+	st.Medium, st.Measured = m.courses[which], true
 }
 
 // traceOf is what the surroundings of all steps of a record were, on its clock; nil if they were not recorded throughout, or by an

@@ -346,7 +346,7 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 		}
 	}
 	for i := range findings {
-		unread(&findings[i], p.Steps, way, re)
+		r.unread(&findings[i], p.Steps, way, re)
 	}
 	stoppedEarly(findings, rec, p.Steps[way.first+len(re.Spans):])
 	m.Judgement = rules.Conclude(findings, r.plan.Groups)
@@ -422,7 +422,7 @@ func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *
 
 // unread turns what a record cannot show, for it lacks steps of the chain, into what cannot be told: at most some time in a range, when
 // there was more of it than was read; and a limit on cooling whose clock may have started before the first reading.
-func unread(f *rules.Finding, steps []model.Step, way *ran, re *model.Recording) {
+func (r *runner) unread(f *rules.Finding, steps []model.Step, way *ran, re *model.Recording) {
 	l := f.Limit
 	cannot := func(why string) {
 		f.Verdict, f.MarginK, f.MarginS, f.Why = rules.CannotTell, nil, nil, why
@@ -430,7 +430,7 @@ func unread(f *rules.Finding, steps []model.Step, way *ran, re *model.Recording)
 	begun := &steps[way.first]
 	if first := re.C[0]; l.Kind == rules.CoolWithin && f.Verdict == rules.NotApplicable && l.FromC != nil && l.ToC != nil && first <= *l.FromC+re.ErrorK && first > *l.ToC &&
 		(way.first > 0 || math.IsInf(begun.DurationS, 1)) && (begun.Stage == nil || !begun.Stage.Heats) {
-		cannot(fmt.Sprintf("The record begins in %s, when the place was at %.3g °C already: when its clock started was not read, so it cannot be told.", begun.Name, first))
+		cannot(fmt.Sprintf("The record begins in %s, when the place was at %s already: when its clock started was not read, so it cannot be told.", begun.Name, r.degrees(first, false)))
 		return
 	}
 	switch l.Kind {
@@ -519,7 +519,8 @@ func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.
 	a := &report.Against{Place: rec.Place.Place, PlaceName: rec.Measured}
 	for _, air := range media {
 		if air.step < len(steps) && air.durationS > steps[air.step].DurationS-1 {
-			steps[air.step].Medium, steps[air.step].Measured, a.Air = air.courses[0], true, true
+			air.into(&steps[air.step], 0)
+			a.Air = true
 			steps[air.step].DurationS = min(steps[air.step].DurationS, air.durationS)
 		}
 	}

@@ -516,6 +516,33 @@ func TestDeviateWalls(t *testing.T) {
 	}
 }
 
+// TestAgainstWalls: a probe beside which the air was recorded is held against the prediction in that air, with walls as it makes them; where it read
+// what that prediction has, nothing is left between them.
+func TestAgainstWalls(t *testing.T) {
+	r, p := slabRunner(model.Cook, 0.04, 5, 180, 25, 5400, heatTo(70))
+	still, wet, hot, emissivity := p.Steps[0].Exposure, false, 180.0, 0.9
+	still.Surface, still.RadiatingC, still.Emissivity, still.Wet, still.FilmW = model.StillAir, &hot, &emissivity, &wet, nil
+	p.Steps[0].Exposure = still
+	at, air := minutesOf(92, func(m int) float64 { return 60 + 0.1*float64(m%2) })
+	withAir(t, r, at, air, 0.5)
+	out, err := r.judged(p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	v, media := r.deviate(p, out)
+	at, core := minutesOf(90, func(m int) float64 { return v.History.At(model.Place{}, float64(m)*60) })
+	logFile(t, r.logs.folder, "core.csv", at, core)
+	r.plan.Records = append(r.plan.Records, r.plan.Records[0])
+	probe := &r.plan.Records[1]
+	probe.Name, probe.File, probe.Of, probe.Measured = "Core", "core.csv", workbook.AtSlowest, "slowest point"
+	r.logs = newLogs(r.plan, r.logs.folder, time.Time{})
+	r.measure(p, out, media)
+	a := out.Measured[0].Against
+	if a == nil || !a.Air || a.RMSK > 0.02 { // the file has hundredths
+		t.Fatalf("%+v %v", a, out.Measured[0].Problems)
+	}
+}
+
 // TestInexact: a blank accuracy is warned of; one of 0 is an answer.
 func TestInexact(t *testing.T) {
 	nought := 0.0
@@ -557,9 +584,18 @@ func TestUnread(t *testing.T) {
 		{"a hold earned", rules.Hold, nil, rules.Met, 0, []float64{0, 600}, 75, rules.Met},
 	} {
 		f := &rules.Finding{Limit: &rules.Limit{Kind: c.kind, Stages: c.stages, FromC: &from, ToC: &to}, Verdict: c.verdict, Why: "It was so."}
-		unread(f, steps, &ran{first: c.first, startS: c.startS}, &model.Recording{C: []float64{c.begins}})
+		r := &runner{head: &report.Head{}}
+		r.unread(f, steps, &ran{first: c.first, startS: c.startS}, &model.Recording{C: []float64{c.begins}})
 		if f.Verdict != c.want {
 			t.Errorf("%s: %v (%s), want %v", c.name, f.Verdict, f.Why, c.want)
+		}
+	}
+	for fahrenheit, want := range map[bool]string{false: "at 40.4 °C already", true: "at 104.72 °F already"} { // 40.4 °C is 104.72 °F
+		f := &rules.Finding{Limit: &rules.Limit{Kind: rules.CoolWithin, FromC: &from, ToC: &to}, Verdict: rules.NotApplicable}
+		r := &runner{head: &report.Head{Fahrenheit: fahrenheit}}
+		r.unread(f, steps, &ran{first: 1, startS: []float64{0, 600}}, &model.Recording{C: []float64{40.4}})
+		if !strings.Contains(f.Why, want) {
+			t.Errorf("%q, want %q", f.Why, want)
 		}
 	}
 }
@@ -644,6 +680,7 @@ func TestDeviateTwice(t *testing.T) {
 	r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 2*3600, coolTo(8, 2*3600))
 	at, air := minutesOf(125, func(m int) float64 { return 2 + 0.01*float64(m%2) })
 	withAir(t, r, at, air, 0)
+	r.plan.Records[0].At = cell.Ref{Sheet: "Records", Row: 2}
 	r.plan.Records = append(r.plan.Records, r.plan.Records[0])
 	r.logs = newLogs(r.plan, r.logs.folder, time.Time{})
 	out, err := r.judged(p)
@@ -653,5 +690,57 @@ func TestDeviateTwice(t *testing.T) {
 	v, media := r.deviate(p, out)
 	if v.Judgement.Verdict != rules.CannotTell || len(media) != 0 || v.Records[1].Problems.Faults() != 1 {
 		t.Errorf("%v %v", v.Judgement, v.Records[1].Problems)
+	}
+	if msg := v.Records[1].Problems[len(v.Records[1].Problems)-1].Msg; !strings.Contains(msg, "twice for Block: by Air (Records row 2) too") {
+		t.Errorf("%q does not name the other row", msg)
+	}
+}
+
+// TestDeviateOtherTimes: two records that give a step different lengths leave open which it had; a length that only one gives counts.
+func TestDeviateOtherTimes(t *testing.T) {
+	after := func(step string, m int) workbook.Start {
+		return workbook.Start{Step: step, Elapsed: true, After: time.Duration(m) * time.Minute, Typed: fmt.Sprintf("%s %d min", step, m)}
+	}
+	for _, c := range []struct {
+		name         string
+		first, other []workbook.Start // of the records of the bath and of the store
+		told         string
+		endS         float64
+	}{
+		{"a step that neither measured", []workbook.Start{after("carry", 0), after("bath", 10)}, []workbook.Start{after("carry", 0), after("bath", 25), after("store", 85)}, "carry", 0},
+		{"a step that one measured", []workbook.Start{after("bath", 0), after("store", 60)}, []workbook.Start{after("bath", 0), after("store", 80)}, "bath", 0},
+		{"agreed", []workbook.Start{after("carry", 0), after("bath", 10), after("store", 80)}, []workbook.Start{after("carry", 5), after("bath", 15), after("store", 85)}, "", 600 + 4200 + 1800},
+		{"said by the other alone", []workbook.Start{after("bath", 0)}, []workbook.Start{after("bath", 0), after("store", 40)}, "", 600 + 2400 + 1800},
+		{"longer by the other alone", []workbook.Start{after("bath", 0)}, []workbook.Start{after("bath", 0), after("store", 75)}, "bath", 0},
+	} {
+		r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 3600, coolTo(20, 3600))
+		carry, store := p.Steps[0], p.Steps[0]
+		carry.Name, carry.Stage, carry.DurationS = "carry", model.Rest, 600
+		store.Name, store.Stage, store.DurationS = "store", model.HoldCold, 1800
+		p.Steps = []model.Step{carry, p.Steps[0], store}
+		at, air := minutesOf(150, func(m int) float64 { return 2 + 0.01*float64(m%2) })
+		withAir(t, r, at, air, 0)
+		first := &r.plan.Records[0]
+		first.Starts, first.At = c.first, cell.Ref{Sheet: "Records", Row: 2}
+		other := *first
+		other.Name, other.Step, other.Measured, other.Starts, other.At = "Store", "store", "medium of store", c.other, cell.Ref{Sheet: "Records", Row: 3}
+		r.plan.Records = append(r.plan.Records, other)
+		r.logs = newLogs(r.plan, r.logs.folder, time.Time{})
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		v, media := r.deviate(p, out)
+		last := v.Records[1].Problems
+		switch {
+		case c.told == "" && (v.History == nil || math.Abs(v.History.EndS()-c.endS) > 1e-6):
+			t.Errorf("%s: %v %v, want a chain of %g s", c.name, v.Judgement.Why, last, c.endS)
+		case c.told != "" && (v.Judgement.Verdict != rules.CannotTell || v.History != nil || len(media) != 0 || last.Faults() != 1):
+			t.Errorf("%s: %v, %v", c.name, v.Judgement, last)
+		case c.told != "":
+			if msg := last[len(last)-1].Msg; !strings.Contains(msg, c.told) || !strings.Contains(msg, "Air (Records row 2)") {
+				t.Errorf("%s: %q", c.name, msg)
+			}
+		}
 	}
 }

@@ -83,12 +83,6 @@ func (c *trial) setting(t *testing.T, key, value string) {
 		c.set.Missing = strings.Split(value, ",")
 	case "correction":
 		c.set.Corrections, err = strconv.ParseFloat(value, 64)
-	case "gap":
-		c.set.GapS, err = strconv.ParseFloat(value, 64)
-	case "from":
-		c.set.From, err = time.ParseDuration(value)
-	case "to":
-		c.set.To, err = time.ParseDuration(value)
 	case "today":
 		c.set.Today, err = time.Parse("2006-01-02", value)
 	default:

@@ -37,6 +37,9 @@ func (r *reader) check(t *taker, start float64) {
 	r.years(t)
 }
 
+// gapTimes is how many times the usual time between two readings may pass without one; more is a gap.
+const gapTimes = 3
+
 // gaps finds the usual step, and where readings are lacking.
 func (r *reader) gaps(t *taker, start float64) {
 	log := r.log
@@ -46,10 +49,7 @@ func (r *reader) gaps(t *taker, start float64) {
 		steps = append(steps, log.TimesS[i]-log.TimesS[i-1])
 	}
 	log.StepS = median(steps)
-	most := r.set.GapS
-	if most <= 0 {
-		most = 3 * log.StepS
-	}
+	most := gapTimes * log.StepS
 	if n < 2 {
 		return
 	}

@@ -29,7 +29,6 @@ const (
 	setZone    = "Time zone"
 	setMissing = "Missing words"
 	setDecimal = "Decimal sign"
-	setStart   = "Starts at"
 )
 
 // Every wording of the reader.
@@ -136,8 +135,6 @@ var (
 	gap         = saying{"No reading between {1} and {2}: {3}, where {4} is usual", ""}
 	springGap   = saying{"No reading between {1} and {2}: {3}, where {4} is usual; clocks are set forward by an hour in such nights, which would be no gap", "if the clock of the logger was, export the record in UTC"}
 	changeNight = saying{"The record runs over the night before {1}, in which clocks change in many countries, and no Time zone is given; no step of an hour is seen", ""}
-	cut         = saying{"{1} of {2} readings are left out, as the setting says: only those from {3} to {4} after the first count", ""}
-	nothingLeft = saying{"No reading lies between {1} and {2} after the first", "check from when to when readings are taken"}
 )
 
 // found is what is wrong in one way in one column: the first place, and others.

@@ -6,7 +6,6 @@ import (
 	"fmt"
 	"math"
 	"path/filepath"
-	"slices"
 	"strings"
 	"time"
 
@@ -27,8 +26,6 @@ type Setting struct {
 	Missing     []string            // further words for a reading that is missing
 	Corrections float64             // K added to every reading
 	AccuracyK   float64             // of the instrument, K; 0 if not stated
-	GapS        float64             // longest time between two readings that is no gap, s; 0: three times the usual one
-	From, To    time.Duration       // only readings from From to To after the first are taken; To 0: all
 	Today       time.Time           // for dates in the future or long ago; the zero time: they are not looked for
 	Cells       map[string]cell.Ref // where each setting stands, by the column of the sheet Records or the item of the sheet Plan; the zero Ref if nowhere
 }
@@ -47,7 +44,7 @@ type Log struct {
 	Lines        []int32   // line (text) or row (workbook) of each reading
 	StepS        float64   // the usual time between readings (median), s
 	ResolutionK  float64   // smallest step of the readings, K
-	Gaps         []int     // i: readings are lacking between i and i+1
+	Gaps         []int     // i: readings are lacking between i and i+1, which lie more than three times the usual time apart
 	Doubtful     []int     // readings that jump faster than their neighbours allow
 	Missing      int       // rows without a reading
 	Rows         int       // rows of the table
@@ -222,10 +219,6 @@ func (r *reader) make(t *taker) {
 	log.Missing, log.Rows = t.lacking.n+t.blanks.n+t.beyond.n, t.rows
 	log.ResolutionK = t.step.size() / l.scale.per
 	r.constant(t)
-	t.between()
-	if len(t.secs) == 0 {
-		return
-	}
 	log.TimesS, log.C, log.Lines = t.secs, t.cs, t.lines
 	start := t.secs[0]
 	for i := range t.secs {
@@ -247,33 +240,6 @@ func (r *reader) make(t *taker) {
 
 // roundMicro takes off what sums of days and fractions leave behind.
 func roundMicro(s float64) float64 { return math.Round(s*1e6) / 1e6 }
-
-// between keeps the readings from one time to another after the first, as the setting says.
-func (t *taker) between() {
-	set := t.r.set
-	from, to := set.From.Seconds(), set.To.Seconds()
-	if from <= 0 && to <= 0 {
-		return
-	}
-	if to <= 0 {
-		to = math.Inf(1)
-	}
-	all := len(t.secs)
-	start := t.secs[0]
-	a, _ := slices.BinarySearch(t.secs, start+from-tiny)
-	b, _ := slices.BinarySearch(t.secs, start+to+tiny)
-	b = max(a, b)
-	t.secs, t.cs, t.lines, t.dates = t.secs[a:b], t.cs[a:b], t.lines[a:b], t.dates[a:b]
-	end := "the end"
-	if !math.IsInf(to, 1) {
-		end = spanOf(to)
-	}
-	if a == b {
-		t.r.problems.Add(nothingLeft.problem(set.Cells[setStart], cell.Fault, setStart, "", spanOf(from), end))
-	} else if b-a < all {
-		t.r.problems.Add(cut.problem(set.Cells[setStart], cell.Note, setStart, "", fmt.Sprint(all-(b-a)), fmt.Sprint(all), spanOf(from), end))
-	}
-}
 
 // echoes shows the first and last rows as they were understood.
 func (r *reader) echoes(t *taker) {

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"slowpoint/model"
@@ -106,24 +107,17 @@ func loosely(typed string) (*product, error) {
 	p := &product{}
 	p.Name, p.Process = "The record", "the stages given"
 	words := names(model.Stages, func(s *model.Stage) string { return s.Name })
+	both := append(slices.Clone(words), names(model.Stages, func(s *model.Stage) string { return s.Also })...)
 	for _, part := range strings.Split(typed, ";") {
 		part = tidy(part)
-		if part == "" || strings.HasPrefix(Key(part), theEnd+" ") {
+		if k, _ := led(part, []string{theEnd}); part == "" || k == 0 {
 			continue
 		}
-		var of *model.Stage
-		word := ""
-		for _, s := range model.Stages {
-			for _, w := range []string{s.Name, s.Also} {
-				if len(w) > len(word) && strings.HasPrefix(Key(part), Key(w)) && (len(part) == len(w) || strings.ContainsRune(stepEnds, rune(part[len(w)]))) {
-					of, word = s, w
-				}
-			}
-		}
-		if of == nil {
+		k, _ := led(part, both)
+		if k < 0 {
 			return nil, fmt.Errorf("%q does not begin with a stage%s; the stages are %s", part, meant(part, words), and(words))
 		}
-		p.Steps = append(p.Steps, model.Step{Name: word, Stage: of, DurationS: math.Inf(1)})
+		p.Steps = append(p.Steps, model.Step{Name: both[k], Stage: model.Stages[k%len(words)], DurationS: math.Inf(1)})
 	}
 	if len(p.Steps) == 0 {
 		return nil, fmt.Errorf("%q names no stage; the stages are %s", typed, and(words))

@@ -247,23 +247,14 @@ func (rec *Record) starting(r *reader, l *Line, of []*product) {
 			continue
 		}
 		s := Start{Typed: part}
-		rest := part
-		for _, st := range chain { // the longest name that fits
-			if len(st) > len(s.Step) && len(part) >= len(st) && Key(part[:len(st)]) == Key(st) && (len(part) == len(st) || strings.ContainsRune(stepEnds, rune(part[len(st)]))) {
-				s.Step, rest = st, strings.TrimSpace(strings.TrimLeft(part[len(st):], stepEnds))
-			}
-		}
-		if s.Step == "" && strings.HasPrefix(Key(part), theEnd+" ") {
-			s.End, rest = true, strings.TrimSpace(part[len(theEnd):])
+		at, rest := led(part, chain)
+		if at >= 0 {
+			s.Step = chain[at]
+		} else if k, after := led(part, []string{theEnd}); k == 0 {
+			s.End, at, rest = true, len(chain), after
 		}
 		rest = strings.TrimPrefix(rest, "at ")
-		at := 0
-		switch {
-		case s.End:
-			at = len(chain)
-		case s.Step != "":
-			at = slices.Index(chain, s.Step)
-		}
+		at = max(at, 0)
 		switch {
 		case at <= last:
 			l.Fault("Starts at", part, recordOrder)
@@ -279,6 +270,19 @@ func (rec *Record) starting(r *reader, l *Line, of []*product) {
 		last = at
 		rec.Starts = append(rec.Starts, s)
 	}
+}
+
+// led tells which of some names a part of Starts at begins with, the longest that fits, and gives what stands behind it; −1 and the whole part if
+// none does.
+func led(part string, names []string) (i int, rest string) {
+	i, rest = -1, part
+	long := 0
+	for k, name := range names {
+		if n := len(name); n > long && len(part) >= n && Key(part[:n]) == Key(name) && (len(part) == n || strings.ContainsRune(stepEnds, rune(part[n]))) {
+			i, rest, long = k, strings.TrimSpace(strings.TrimLeft(part[n:], stepEnds)), n
+		}
+	}
+	return i, rest
 }
 
 // when understands a time of the clock with or without a date, or a duration with its unit.
