@@ -9,7 +9,7 @@ type Recording struct {
 	C       []float64 // °C, corrected, as long as TimesS
 	ErrorK  float64   // accuracy of the instrument and half its resolution, K
 	Gaps    []int     // i: readings are lacking between i and i+1, beyond the usual time between two
-	Doubted []int     // readings that jump faster than their neighbours allow
+	Doubted []int     // readings that jump faster than their neighbours allow, or may be cut off
 	LowC    float64   // what the place cannot have fallen below in a gap, and cannot have risen above, °C: the range of the medium, or NaN
 	HighC   float64   // where none is known; then that of the whole record
 	Medium  *Trace    // of the surroundings; nil if not recorded

@@ -1,7 +1,6 @@
 package report
 
 import (
-	"fmt"
 	"math"
 	"strconv"
 	"strings"
@@ -111,8 +110,7 @@ const roomShown = 3.6e6
 // Duration writes seconds as a person says them.
 func Duration(s float64) string { return duration(s, nearest) }
 
-// duration writes seconds as a person says them: "1 h 35 min", "3 h 05 min", "4 min 30 s", "2.5 s".
-// From an hour on it is rounded to the minute, below to the second, below ten seconds to a tenth.
+// duration writes seconds as a person says them, rounded as asked.
 func duration(s float64, r rounding) string {
 	if s < 0 {
 		back := map[rounding]rounding{nearest: nearest, down: up, up: down}[r]
@@ -121,23 +119,7 @@ func duration(s float64, r rounding) string {
 	if r == down && s >= roomShown { // room beyond that says nothing, and lethality far above its need makes room without end
 		return "over 1000 h"
 	}
-	switch whole := r.round(s, 0); {
-	case s < 10:
-		return plain(s, 1, r) + " s"
-	case whole < 60:
-		return fmt.Sprintf("%.0f s", whole)
-	case whole < 3600:
-		m, rest := int(whole)/60, int(whole)%60
-		if rest == 0 {
-			return fmt.Sprintf("%d min", m)
-		}
-		return fmt.Sprintf("%d min %02d s", m, rest)
-	}
-	m := int64(r.round(s/60, 0))
-	if m%60 == 0 {
-		return fmt.Sprintf("%d h", m/60)
-	}
-	return fmt.Sprintf("%d h %02d min", m/60, m%60)
+	return unit.Lasting(s, r.round)
 }
 
 // mm writes a length (m) in mm.

@@ -86,6 +86,9 @@ func judge(cmd *cobra.Command, path, limits string, given workbook.Given, o *che
 		}
 		given.Cells["Starts at"] = given.Stages
 	}
+	if _, err := workbook.Look(path); err != nil {
+		return &failure{exitInput, fmt.Errorf("the file of the logger, %w", err)}
+	}
 	name := filepath.Base(path)
 	given.Cells["Record"], given.Cells["File"] = strings.TrimSuffix(name, filepath.Ext(name)), name
 	if !filepath.IsLocal(name) || strings.ContainsAny(name, `:\`) {

@@ -200,3 +200,15 @@ func TestAmbiguous(t *testing.T) {
 		}
 	}
 }
+
+// TestLasting: times as a person says them, each at the edge of its form.
+func TestLasting(t *testing.T) {
+	for s, want := range map[float64]string{0: "0 s", 2.54: "2.5 s", 9.99: "10 s", 59.4: "59 s", 59.6: "1 min", 90: "1 min 30 s", 3599.6: "1 h", 3660: "1 h 01 min", 5400: "1 h 30 min", 360000: "100 h"} {
+		if got := Lasting(s, nil); got != want {
+			t.Errorf("%g s: %q, want %q", s, got, want)
+		}
+	}
+	if got := Lasting(61.2, func(v float64, _ int) float64 { return math.Ceil(v) }); got != "1 min 02 s" {
+		t.Errorf("61.2 s rounded up: %q", got)
+	}
+}

@@ -79,6 +79,9 @@ func (r *reader) openBook(size int64) (source, bool) {
 	sum := sha256.Sum256(data)
 	s := &sheet{book: b, file: r.set.Name, sum: hex.EncodeToString(sum[:])}
 	r.is1904 = b.Is1904
+	if b.Macros {
+		r.problems.Add(hasMacros.problem(r.set.Cells[setFile], cell.Warning, setFile, r.set.Name))
+	}
 	if s.name = r.choose(b); s.name == "" {
 		return nil, false
 	}

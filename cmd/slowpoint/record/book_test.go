@@ -54,11 +54,29 @@ func TestBrokenBooks(t *testing.T) {
 // TestDamagedSheet holds that nothing is used of a sheet that ends in the middle.
 func TestDamagedSheet(t *testing.T) {
 	sound := buildBook(t, "sheet Log\nTime (s)|Core (°C)\n0|63.3\n10|63.4\n20|63.5\n")
-	r, err := zip.NewReader(bytes.NewReader(sound), int64(len(sound)))
+	parts := partsOf(t, sound)
+	for i := 0; i < len(parts); i += 2 {
+		if strings.HasSuffix(parts[i], "sheet1.xml") {
+			parts[i+1] = parts[i+1][:strings.LastIndex(parts[i+1], "<row")]
+		}
+	}
+	name := filepath.Join(t.TempDir(), "probe.xlsx")
+	if err := os.WriteFile(name, []byte(packed(t, parts...)), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	l, problems := Read(Setting{File: name, Time: "Time", Temperature: "Core"})
+	if l != nil || !strings.Contains(problems.Error(), "the workbook is damaged in its part xl/worksheets/sheet1.xml: it ends in the middle") {
+		t.Error(l, problems)
+	}
+}
+
+// partsOf are the parts of a workbook: name, content, name, content.
+func partsOf(t *testing.T, book []byte) (parts []string) {
+	t.Helper()
+	r, err := zip.NewReader(bytes.NewReader(book), int64(len(book)))
 	if err != nil {
 		t.Fatal(err)
 	}
-	var parts []string
 	for _, f := range r.File {
 		in, err := f.Open()
 		if err != nil {
@@ -68,18 +86,25 @@ func TestDamagedSheet(t *testing.T) {
 		if _, err := b.ReadFrom(in); err != nil {
 			t.Fatal(err)
 		}
-		text := b.String()
-		if strings.HasSuffix(f.Name, "sheet1.xml") {
-			text = text[:strings.LastIndex(text, "<row")]
+		parts = append(parts, f.Name, b.String())
+	}
+	return parts
+}
+
+// TestMacros: the macros of a workbook are told and not run; its cells are taken as they were saved.
+func TestMacros(t *testing.T) {
+	plain := buildBook(t, "sheet Log\nTime (s)|Core (°C)\n0|63.3\n10|63.4\n")
+	for _, c := range []struct{ name, content, want string }{
+		{"probe.xlsx", string(plain), ""},
+		{"probe.xlsm", packed(t, append(partsOf(t, plain), "xl/vbaProject.bin", "macros")...), `warning: Records!D2: "probe.xlsm" has macros, which are never run; the cells are taken as they were saved last` + "\n"},
+	} {
+		name := filepath.Join(t.TempDir(), c.name)
+		if err := os.WriteFile(name, []byte(c.content), 0o644); err != nil {
+			t.Fatal(err)
 		}
-		parts = append(parts, f.Name, text)
-	}
-	name := filepath.Join(t.TempDir(), "probe.xlsx")
-	if err := os.WriteFile(name, []byte(packed(t, parts...)), 0o644); err != nil {
-		t.Fatal(err)
-	}
-	l, problems := Read(Setting{File: name, Time: "Time", Temperature: "Core"})
-	if l != nil || !strings.Contains(problems.Error(), "the workbook is damaged in its part xl/worksheets/sheet1.xml: it ends in the middle") {
-		t.Error(l, problems)
+		l, problems := Read(Setting{File: name, Time: "Time", Temperature: "Core", Cells: places})
+		if l == nil || len(l.C) != 2 || said(nil, problems) != c.want {
+			t.Errorf("%s: %v, want %q", c.name, said(nil, problems), c.want)
+		}
 	}
 }

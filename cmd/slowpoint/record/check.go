@@ -95,7 +95,8 @@ const (
 	neighbours  = 4   // steps on either side
 )
 
-// jumps finds readings, three in a row at most, that leave their neighbours and come back faster than those ever move.
+// jumps finds readings, three in a row at most, that leave their neighbours and come back faster than those ever move, and adds to these a last
+// one that may be cut off.
 func (r *reader) jumps(t *taker) {
 	c := r.log.C
 	least := max(leastJump, 10*r.log.ResolutionK)
@@ -110,6 +111,13 @@ func (r *reader) jumps(t *taker) {
 			r.tells.tell(doubtful, cell.Warning, "", r.log.Lines[i+k], t.lay.temp, shownC(c[i+k]), shownC(c[i-1]), shownC(c[i+n]))
 		}
 		i += n
+	}
+	if last := len(c) - 1; t.cutAt > 0 { // of a record turned round it is the first
+		if r.log.Lines[0] == t.cutAt {
+			r.log.Doubtful = slices.Insert(r.log.Doubtful, 0, 0)
+		} else if r.log.Lines[last] == t.cutAt {
+			r.log.Doubtful = append(r.log.Doubtful, last)
+		}
 	}
 }
 

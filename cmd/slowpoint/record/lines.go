@@ -45,6 +45,7 @@ type row struct {
 	hidden bool
 	quotes bool // a quotation mark is in the wrong place
 	zeros  bool // holds zero bytes
+	cut    bool // the text ends in it, without a line end
 	fields []field
 }
 
@@ -79,6 +80,7 @@ type lineReader struct {
 	ended    bool
 	eol      byte
 	zeros    bool // long runs of zero bytes were passed over
+	cut      bool // the last line had no end
 }
 
 func newLineReader(r io.Reader, eol byte) *lineReader {
@@ -106,7 +108,7 @@ func (l *lineReader) next() ([]byte, error) {
 				return nil, io.EOF
 			}
 			line := l.buf[l.from:l.to]
-			l.from = l.to
+			l.from, l.cut = l.to, true
 			return line, nil
 		}
 		if seen > mostLine {

@@ -56,6 +56,7 @@ var (
 	sheetOfText  = saying{"is given, but {1} is text and has no sheets", "clear the cell"}
 	hiddenRow    = saying{"The row is hidden", "unhide it or delete it; a hidden row is never used and never skipped in silence"}
 	hiddenColumn = saying{"Column {1} is hidden, and its values are used", "unhide it, so that everybody sees what is read"}
+	hasMacros    = saying{"has macros, which are never run; the cells are taken as they were saved last", ""}
 	struckCell   = saying{"is struck through, or a part of it is", "take the line away if the row counts, or delete the row; what is struck through is never used and never skipped in silence"}
 	shownOther   = saying{"is stored, but the cell shows something else, by its number format or by raised digits", "look which counts, and give the cells the number format General"}
 	mergedData   = saying{"The cells {1} are merged", "unmerge them and fill each cell, or export the record again"}
@@ -129,7 +130,8 @@ var (
 	wrongForm   = saying{"is formatted as a date, a time or a percentage, and is no temperature", "check the column, and give its cells a number format"}
 	formulaUsed = saying{"{1} of the cells hold formulas; their stored results are used ({2})", ""}
 	outside     = saying{"is beyond what is read as a temperature of food or its surroundings, {1} to {2}, and is taken as missing: {3} of {4} readings ({5})", ""}
-	constant    = saying{"is every one of the {1} readings: the sensor does not follow", "choose another channel, or another record"}
+	constant    = saying{"is every one of the {1} readings: the sensor does not follow", "choose another channel or record; of surroundings that did stay at one value, leave the record out and write it as the Medium temperature of the step"}
+	cutReading  = saying{"stands at the end of the file, in a line without an end, and is shorter than the readings above: it may be cut off, and is kept", "export the record again, or take the line out"}
 	frozen      = saying{"is read {1} times in a row, up to {2}: the sensor may have stopped", "check the logger"}
 	doubtful    = saying{"jumps away from {1} before and {2} after it, and is kept", "look at the record there: a loose plug or a moved probe?"}
 	gap         = saying{"No reading between {1} and {2}: {3}, where {4} is usual", ""}

@@ -45,7 +45,7 @@ type Log struct {
 	StepS        float64   // the usual time between readings (median), s
 	ResolutionK  float64   // smallest step of the readings, K
 	Gaps         []int     // i: readings are lacking between i and i+1, which lie more than three times the usual time apart
-	Doubtful     []int     // readings that jump faster than their neighbours allow
+	Doubtful     []int     // readings that jump faster than their neighbours allow, or may be cut off
 	Missing      int       // rows without a reading
 	Rows         int       // rows of the table
 	About        []string  // lines above the table, as typed
@@ -148,7 +148,7 @@ func (r *reader) table() {
 		return
 	}
 	r.widest(l, head)
-	t := &taker{r: r, lay: l}
+	t := &taker{r: r, lay: l, places: math.MaxInt8}
 	if err := r.src.each(t.take); err != nil {
 		r.broken(err)
 		return

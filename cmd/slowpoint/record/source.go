@@ -74,7 +74,7 @@ func (t *text) each(take func(*row) error) error {
 		if t.lines == 1 {
 			line = bytes.TrimPrefix(line, []byte("\xef\xbb\xbf"))
 		}
-		r = row{n: t.lines}
+		r = row{n: t.lines, cut: l.cut}
 		r.zeros, l.zeros = l.zeros, false
 		if bytes.IndexByte(line, 0) >= 0 {
 			atEnd := l.ended && l.from == l.to

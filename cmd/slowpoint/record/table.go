@@ -40,8 +40,11 @@ type taker struct {
 	openComma shownSign // the first number whose comma may divide thousands
 	sure      bool      // a decimal sign is shown that cannot be one of thousands
 	step      grid
-	inCells   bool // the unit of the readings stands in the cells
-	bare      bool // a reading has no unit, and none was stated
+	places    int8  // the fewest digits behind the decimal sign of a reading so far
+	fewest    int8  // the same, before the last one
+	cutAt     int32 // line of a last reading that may be cut off; 0 if there is none
+	inCells   bool  // the unit of the readings stands in the cells
+	bare      bool  // a reading has no unit, and none was stated
 
 	rows     int
 	lacking  tally // missing words
@@ -277,6 +280,10 @@ func (t *taker) reading(r *row, s stamp, temp *field) {
 		return
 	}
 	x, ok := t.value(r, temp)
+	if ok && r.cut && t.shorter(r, temp) {
+		t.cutAt = r.n
+		t.r.tells.tell(cutReading, cell.Warning, "", r.n, t.lay.temp, inUTF8(temp.b))
+	}
 	t.echo.add(r.n, r.at(t.lay.time).b, r.at(t.lay.clock).b, temp.b)
 	if t.form == noStamp {
 		t.form, t.sample, t.groups, t.zoned, t.east = s.form, t.typed(r), s.groups, s.zoned, s.east
@@ -403,7 +410,19 @@ func (t *taker) value(r *row, f *field) (float64, bool) {
 		}
 	}
 	t.step.add(v)
+	if t.fewest = t.places; v.places < t.places {
+		t.places = v.places
+	}
 	return v.x, true
+}
+
+// shorter tells whether a reading at the very end of a text is shorter than those above: it has fewer decimals than any, or is how the one above begins.
+func (t *taker) shorter(r *row, temp *field) bool {
+	if t.echo.n == 0 || t.lay.temp != len(r.fields) {
+		return false
+	}
+	above := t.echo.ring[(t.echo.n-1)%mostEcho].val
+	return t.places < t.fewest || len(temp.b) < len(above) && bytes.HasPrefix(above, temp.b)
 }
 
 // sound tells what is wrong with a number.

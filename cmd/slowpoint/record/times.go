@@ -7,6 +7,7 @@ import (
 	"time"
 
 	"slowpoint/model/cell"
+	"slowpoint/model/unit"
 )
 
 // instants turns the times as typed into seconds that can be compared, in t.secs: since 1970, since some midnight, or since the start that
@@ -146,7 +147,7 @@ func (t *taker) clocks() bool {
 		kind = ofDay
 	case t.groups == 2:
 		s := int(t.secs[0]) / 60
-		day, span := fmt.Sprintf("%d h %d min", s/60, s%60), fmt.Sprintf("%d min %d s", s/60, s%60)
+		day, span := unit.Lasting(float64(60*s), nil), unit.Lasting(float64(s), nil)
 		t.r.ask(eitherClock, setTime, "", quote(t.sample), t.r.row(t.firstAt), day, span, name)
 		return false
 	}
@@ -312,21 +313,12 @@ func instant(s float64) time.Time {
 	return time.Unix(int64(whole), int64(math.Round((s-whole)*1e6))*1000).UTC()
 }
 
-// spanOf writes a time between two others: "45 s", "5 min", "1 h 30 min".
+// spanOf writes a time between two others: "0.764 s", "45 s", "5 min", "1 h 05 min".
 func spanOf(s float64) string {
-	switch {
-	case s < 120:
+	if s < 10 { // fast loggers
 		return fmt.Sprintf("%.4g s", s)
-	case s < 3600:
-		return fmt.Sprintf("%.4g min", s/60)
-	case s < 86400:
-		n := int(math.Round(s / 60))
-		if n%60 == 0 {
-			return fmt.Sprintf("%d h", n/60)
-		}
-		return fmt.Sprintf("%d h %d min", n/60, n%60)
 	}
-	return fmt.Sprintf("%.3g days", s/86400)
+	return unit.Lasting(s, nil)
 }
 
 // median sorts and gives the middle one, the lower of two; 0 of none.

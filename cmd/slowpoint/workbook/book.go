@@ -16,6 +16,7 @@ const (
 // A Book is a workbook of somebody's own of which one sheet is read row by row, without being kept.
 type Book struct {
 	Is1904 bool // its dates count from 1904
+	Macros bool // it has macros; they are never run
 	files  map[string]*zip.File
 	b      *book
 	m      *meter
@@ -34,7 +35,7 @@ func OpenBook(data []byte) (*Book, error) {
 	if k.b, _, err = readBook(k.files, k.m); err != nil {
 		return nil, plainBook(err)
 	}
-	k.Is1904 = k.b.is1904
+	k.Is1904, k.Macros = k.b.is1904, k.files["xl/vbaproject.bin"] != nil
 	return k, nil
 }
 
