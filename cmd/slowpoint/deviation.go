@@ -466,24 +466,40 @@ func elsewhere(steps []model.Step, i int) []float64 {
 	return mild
 }
 
-// simplified drops the rows of a course that straight lines between the others pass within simplifyK (Ramer, Douglas and Peucker's method).
+// mostTogether is how many readings are stood for by lines together: the method looks at up to half its square.
+const mostTogether = 512
+
+// simplified drops the rows of a course that straight lines between the others pass within simplifyK (Ramer, Douglas and Peucker's method, in pieces).
 func simplified(c model.Course) model.Course {
+	looks := 0
+	return simplifiedBy(c, &looks)
+}
+
+// simplifiedBy counts the rows that were looked at.
+func simplifiedBy(c model.Course, looks *int) model.Course {
 	n := len(c.TimesS)
 	keep := make([]bool, n)
-	keep[0], keep[n-1] = true, true
+	keep[0] = true
 	type part struct{ from, to int }
-	todo := []part{{0, n - 1}}
+	var todo []part
+	for at := 0; at < n-1; {
+		to := min(at+mostTogether, n-1)
+		keep[to] = true
+		todo = append(todo, part{at, to})
+		at = to
+	}
 	for len(todo) > 0 {
 		p := todo[len(todo)-1]
 		todo = todo[:len(todo)-1]
-		far, at := 0.0, -1
+		long, rise := c.TimesS[p.to]-c.TimesS[p.from], c.C[p.to]-c.C[p.from]
+		far, at := simplifyK, -1
 		for i := p.from + 1; i < p.to; i++ {
-			f := (c.TimesS[i] - c.TimesS[p.from]) / (c.TimesS[p.to] - c.TimesS[p.from])
-			if d := math.Abs(c.C[i] - c.C[p.from] - f*(c.C[p.to]-c.C[p.from])); d > far {
+			if d := math.Abs(c.C[i] - c.C[p.from] - (c.TimesS[i]-c.TimesS[p.from])/long*rise); d > far {
 				far, at = d, i
 			}
 		}
-		if far > simplifyK {
+		*looks += p.to - p.from
+		if at >= 0 {
 			keep[at] = true
 			todo = append(todo, part{p.from, at}, part{at, p.to})
 		}

@@ -79,7 +79,7 @@ func TestSimplified(t *testing.T) {
 	for range 50 {
 		c := model.Course{Name: "air"}
 		x, y := 0.0, 3.0
-		for range 2 + rng.IntN(400) {
+		for range 2 + rng.IntN(1500) {
 			c.TimesS, c.C = append(c.TimesS, x), append(c.C, y)
 			x += 5 + 50*rng.Float64()
 			y += 0.3 * rng.NormFloat64() * float64(rng.IntN(2))
@@ -98,6 +98,36 @@ func TestSimplified(t *testing.T) {
 			if d := math.Abs(s.C[k] + f*(s.C[k+1]-s.C[k]) - c.C[i]); d > simplifyK+1e-9 {
 				t.Fatalf("%g K from a reading", d)
 			}
+		}
+	}
+}
+
+// flicker is the air of a room by a logger of tenths: up and down by one, reading by reading, the hardest to stand for by lines.
+func flicker(n int) model.Course {
+	c := model.Course{TimesS: make([]float64, n), C: make([]float64, n)}
+	for i := range n {
+		c.TimesS[i], c.C[i] = 5*float64(i), 3+0.1*float64(i%2)
+	}
+	return c
+}
+
+// TestSimplifiedLong: four times the readings take about four times the looks, not sixteen times.
+func TestSimplifiedLong(t *testing.T) {
+	looks := func(n int) (k int) {
+		simplifiedBy(flicker(n), &k)
+		return k
+	}
+	if a, b := looks(20_000), looks(80_000); b > 5*a || a == 0 {
+		t.Errorf("%d looks for 20000 readings, %d for 80000", a, b)
+	}
+}
+
+// BenchmarkSimplified takes a log of a million readings.
+func BenchmarkSimplified(b *testing.B) {
+	c := flicker(1_000_000)
+	for b.Loop() {
+		if s := simplified(c); len(s.C) < 2 {
+			b.Fatal("nothing is left")
 		}
 	}
 }
