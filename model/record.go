@@ -50,7 +50,7 @@ func NewRecord(spans []Span, traces []Trace, medium *Trace) (*History, error) {
 	for _, tr := range traces {
 		c := make([]float64, len(scan.TimesS))
 		for i, t := range scan.TimesS {
-			c[i] = tr.at(t)
+			c[i] = tr.At(t)
 		}
 		scan.C = append(scan.C, c)
 	}
@@ -65,25 +65,25 @@ func NewRecord(spans []Span, traces []Trace, medium *Trace) (*History, error) {
 		}
 		return &traces[best]
 	}
-	h.At = func(p Place, t float64) float64 { return find(p).at(t) }
+	h.At = func(p Place, t float64) float64 { return find(p).At(t) }
 	h.Course = func(p Place, times, out []float64) {
 		tr := find(p)
 		for i, t := range times {
-			out[i] = tr.at(t)
+			out[i] = tr.At(t)
 		}
 	}
 	h.MediumC = func(t float64) float64 {
 		if medium == nil {
 			return math.NaN()
 		}
-		return medium.at(t)
+		return medium.At(t)
 	}
 	h.HumidityPc = func(t float64) float64 { return humidityAt(spans, t) }
 	return h, nil
 }
 
-// at is the straight-line value of a trace at t.
-func (tr *Trace) at(t float64) float64 {
+// At is the straight-line value of a trace at t, s; before its first reading the first, after its last one the last.
+func (tr *Trace) At(t float64) float64 {
 	return lineAt(tr.TimesS, tr.C, t)
 }
 

@@ -1,5 +1,7 @@
 package model
 
+import "slices"
+
 // Recording is what a logger measured at one place of a food, with what its readings leave open.
 type Recording struct {
 	Point
@@ -22,4 +24,22 @@ func (r *Recording) Line() (*History, error) {
 		h.ErrorK = r.ErrorK
 	}
 	return h, err
+}
+
+// GapTimes is how many times the usual time between two readings may pass without one; more is a gap.
+const GapTimes = 3
+
+// UsualStep is the median time from a reading to a later one, the lower of two, s; 0 if there are none.
+func UsualStep(timesS []float64) float64 {
+	d := make([]float64, 0, len(timesS))
+	for i := 1; i < len(timesS); i++ {
+		if step := timesS[i] - timesS[i-1]; step > 0 {
+			d = append(d, step)
+		}
+	}
+	if len(d) == 0 {
+		return 0
+	}
+	slices.Sort(d)
+	return d[(len(d)-1)/2]
 }

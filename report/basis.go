@@ -49,11 +49,14 @@ func (x *sheet) factorTable() {
 }
 
 // significant writes a number with about six digits.
-func significant(v float64) string {
+func significant(v float64) string { return plain(v, decimalsFor(v, 6), nearest) }
+
+// decimalsFor is how many decimals show a number of significant digits, nine at most; none for 0 and what is no number.
+func decimalsFor(v float64, digits int) int {
 	if v == 0 || math.IsNaN(v) || math.IsInf(v, 0) {
-		return plain(v, 0, nearest)
+		return 0
 	}
-	return plain(v, max(0, min(9, 5-int(math.Floor(math.Log10(math.Abs(v)))))), nearest)
+	return max(0, min(9, digits-1-int(math.Floor(math.Log10(math.Abs(v))))))
 }
 
 // runSentence sets a further run beside the usual one at the deciding limit.

@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"math"
 	"slices"
-	"strconv"
 	"strings"
 
 	"slowpoint/model"
@@ -371,29 +370,14 @@ func (p *Product) measuredWorst() *rules.Verdict {
 // predictedAt is the prediction beside a record, for the chart.
 func predictedAt(tr *model.Trace, times []float64) []float64 {
 	out := make([]float64, len(times))
-	j := 0
 	for i, t := range times {
 		out[i] = math.NaN()
-		if len(tr.TimesS) == 0 || t < tr.TimesS[0]-1e-6 || t > tr.TimesS[len(tr.TimesS)-1]+1e-6 {
-			continue
+		if n := len(tr.TimesS); n > 0 && t >= tr.TimesS[0]-1e-6 && t <= tr.TimesS[n-1]+1e-6 {
+			out[i] = tr.At(t)
 		}
-		for j+1 < len(tr.TimesS) && tr.TimesS[j+1] < t {
-			j++
-		}
-		if j+1 >= len(tr.TimesS) {
-			out[i] = tr.C[j]
-			continue
-		}
-		f := (t - tr.TimesS[j]) / (tr.TimesS[j+1] - tr.TimesS[j])
-		out[i] = tr.C[j] + min(max(f, 0), 1)*(tr.C[j+1]-tr.C[j])
 	}
 	return out
 }
 
-// three writes a number with three significant digits.
-func three(v float64) string {
-	if v == 0 {
-		return "0"
-	}
-	return strconv.FormatFloat(v, 'f', max(0, 2-int(math.Floor(math.Log10(math.Abs(v))))), 64)
-}
+// three writes a number with three significant digits, noughts behind the decimal sign too.
+func three(v float64) string { return decimal(v, decimalsFor(v, 3), nearest) }

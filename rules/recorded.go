@@ -65,7 +65,7 @@ func (d *reading) medium() *track {
 		m := d.r.Medium
 		// air may have been at anything in a gap
 		r := &model.Recording{Point: m.Point, Spans: d.r.Spans, TimesS: m.TimesS, C: m.C, ErrorK: d.r.ErrorK, LowC: anyLowC, HighC: anyHighC}
-		usual := usualStep(m.TimesS)
+		usual := model.UsualStep(m.TimesS)
 		for i := 0; i+1 < len(m.TimesS); i++ {
 			if m.TimesS[i+1]-m.TimesS[i] > farBeyond*usual+sameS {
 				r.Gaps = append(r.Gaps, i)

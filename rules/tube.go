@@ -81,108 +81,135 @@ func check(r *model.Recording) error {
 	return nil
 }
 
-// usualStep is the median time between two readings, s; 0 for one reading.
-func usualStep(t []float64) float64 {
-	if len(t) < 2 {
-		return 0
-	}
-	// of a long record a share of the steps is enough
-	every := 1 + len(t)/20000
-	var d []float64
-	for i := 0; i+1 < len(t); i += every {
-		d = append(d, t[i+1]-t[i])
-	}
-	slices.Sort(d)
-	return d[len(d)/2]
-}
-
 // farBeyond is by how many usual intervals a step may begin before the first reading or end after the last one and still be judged from
 // or to that reading, and how many make a gap.
-const farBeyond = 3
+const farBeyond = model.GapTimes
 
 // Where nothing was measured at the edge of a record and no medium is known, a place may have been at anything that food comes to, °C.
 const anyLowC, anyHighC = -80, 300
 
 // newTube lays out what a recording allows, without the readings in without (rising).
 func newTube(r *model.Recording, without []int) *tube {
-	u := &tube{usualS: usualStep(r.TimesS), lowest: math.Inf(1), most: math.Inf(-1), soFar: region{lo: math.Inf(1), hi: math.Inf(-1)}}
-	n := len(r.TimesS)
-	out := make(map[int]bool, len(without))
-	for _, i := range without {
-		out[i] = true
-	}
-	first, last := 0, n-1
-	for first < last && out[first] {
-		first++
-	}
-	for last > first && out[last] {
-		last--
-	}
-	for i := first; i <= last; i++ {
-		if !out[i] {
-			u.lowest, u.most = math.Min(u.lowest, r.C[i]), math.Max(u.most, r.C[i])
-		}
-	}
-	u.spans = clipped(r.Spans, r.TimesS[first], r.TimesS[last], farBeyond*u.usualS)
-	ends := u.ends()
-	gaps := map[int]bool{}
-	for _, g := range r.Gaps {
-		gaps[g] = true
-	}
-	air := newSurroundings(r)
-	u.t, u.c = make([]float64, 0, min(n, 1<<20)+len(ends)), make([]float64, 0, min(n, 1<<20)+len(ends))
-	k := 0
-	for k < len(ends) && ends[k] < r.TimesS[first] {
-		k++
-	}
-	if k > 0 { // the chain begins before the record
-		g := gap{interval: interval{ends[0], r.TimesS[first]}, edge: -1}
-		g.lo, g.hi = air.bounds(r, u, first, first, g.interval)
-		u.stretch(ends[:k], knot{g.a, r.C[first]}, knot{g.b, r.C[first]}, &g, true)
-	}
-	for i := first; i <= last; {
-		next, isGap := i+1, gaps[i]
-		for next <= last && out[next] {
-			isGap = isGap || gaps[next]
-			next++
-		}
-		t, c := r.TimesS[i], r.C[i]
-		u.soFar.lo, u.soFar.hi = math.Min(u.soFar.lo, c), math.Max(u.soFar.hi, c)
-		edge := k < len(ends) && ends[k] <= t
-		for k < len(ends) && ends[k] <= t {
-			k++
-		}
-		// readings that repeat the one before and the one after say nothing more
-		if m := len(u.c); edge || m < 2 || next > last || isGap || u.c[m-1] != c || r.C[next] != c || gapsAt(u, m) || k < len(ends) && ends[k] < r.TimesS[next] {
-			u.t, u.c = append(u.t, t), append(u.c, c)
-		}
-		if edge {
-			u.kept = append(u.kept, len(u.t)-1)
-		}
-		if next > last {
-			break
-		}
-		from := k
-		for k < len(ends) && ends[k] < r.TimesS[next] {
-			k++
-		}
-		if isGap || k > from {
-			a, b := knot{t, c}, knot{r.TimesS[next], r.C[next]}
-			var g *gap
-			if isGap {
-				g = &gap{interval: interval{a.t, b.t}}
-				g.lo, g.hi = air.bounds(r, u, i, next, g.interval)
-			}
-			u.stretch(ends[from:k], a, b, g, false)
+	b := newLayer(r, without)
+	b.before()
+	for i := b.first; i <= b.last; {
+		next, isGap := b.next(i)
+		b.reading(i, next, isGap)
+		if next <= b.last {
+			b.between(i, next, isGap)
 		}
 		i = next
 	}
-	if k < len(ends) { // the chain ends after the record
-		g := gap{interval: interval{r.TimesS[last], ends[len(ends)-1]}, edge: 1}
-		g.lo, g.hi = air.bounds(r, u, last, last, g.interval)
-		u.stretch(ends[k:], knot{g.a, r.C[last]}, knot{g.b, r.C[last]}, &g, false)
+	b.after()
+	return b.u
+}
+
+// layer lays out a tube, reading by reading.
+type layer struct {
+	u           *tube
+	r           *model.Recording
+	air         *surroundings
+	out         map[int]bool // readings that are left out
+	gaps        map[int]bool // by the reading before
+	first, last int          // of the readings that are not
+	ends        []float64    // of the steps
+	k           int          // how many of them are laid out
+}
+
+// newLayer finds what the readings that are not left out say as a whole.
+func newLayer(r *model.Recording, without []int) *layer {
+	u := &tube{usualS: model.UsualStep(r.TimesS), lowest: math.Inf(1), most: math.Inf(-1), soFar: region{lo: math.Inf(1), hi: math.Inf(-1)}}
+	n := len(r.TimesS)
+	b := &layer{u: u, r: r, out: make(map[int]bool, len(without)), gaps: map[int]bool{}, last: n - 1}
+	for _, i := range without {
+		b.out[i] = true
 	}
-	return u
+	for b.first < b.last && b.out[b.first] {
+		b.first++
+	}
+	for b.last > b.first && b.out[b.last] {
+		b.last--
+	}
+	for i := b.first; i <= b.last; i++ {
+		if !b.out[i] {
+			u.lowest, u.most = math.Min(u.lowest, r.C[i]), math.Max(u.most, r.C[i])
+		}
+	}
+	u.spans = clipped(r.Spans, r.TimesS[b.first], r.TimesS[b.last], farBeyond*u.usualS)
+	b.ends = u.ends()
+	for _, g := range r.Gaps {
+		b.gaps[g] = true
+	}
+	b.air = newSurroundings(r)
+	u.t, u.c = make([]float64, 0, min(n, 1<<20)+len(b.ends)), make([]float64, 0, min(n, 1<<20)+len(b.ends))
+	return b
+}
+
+// before lays out what of the chain lies before the record.
+func (b *layer) before() {
+	start, c := b.r.TimesS[b.first], b.r.C[b.first]
+	for b.k < len(b.ends) && b.ends[b.k] < start {
+		b.k++
+	}
+	if b.k > 0 {
+		g := gap{interval: interval{b.ends[0], start}, edge: -1}
+		g.lo, g.hi = b.air.bounds(b.r, b.u, b.first, b.first, g.interval)
+		b.u.stretch(b.ends[:b.k], knot{g.a, c}, knot{g.b, c}, &g, true)
+	}
+}
+
+// next is the reading after i that counts, and whether readings are lacking between the two.
+func (b *layer) next(i int) (next int, isGap bool) {
+	next, isGap = i+1, b.gaps[i]
+	for next <= b.last && b.out[next] {
+		isGap = isGap || b.gaps[next]
+		next++
+	}
+	return next, isGap
+}
+
+// reading lays out a reading as a knot, unless it repeats the one before and the one after, so that it says nothing more.
+func (b *layer) reading(i, next int, isGap bool) {
+	u, t, c := b.u, b.r.TimesS[i], b.r.C[i]
+	u.soFar.lo, u.soFar.hi = math.Min(u.soFar.lo, c), math.Max(u.soFar.hi, c)
+	edge := b.k < len(b.ends) && b.ends[b.k] <= t
+	for b.k < len(b.ends) && b.ends[b.k] <= t {
+		b.k++
+	}
+	if m := len(u.c); edge || m < 2 || next > b.last || isGap || u.c[m-1] != c || b.r.C[next] != c || gapsAt(u, m) || b.k < len(b.ends) && b.ends[b.k] < b.r.TimesS[next] {
+		u.t, u.c = append(u.t, t), append(u.c, c)
+	}
+	if edge {
+		u.kept = append(u.kept, len(u.t)-1)
+	}
+}
+
+// between lays out what lies between two readings where that is a gap, or cut by the ends of steps.
+func (b *layer) between(i, next int, isGap bool) {
+	from := b.k
+	for b.k < len(b.ends) && b.ends[b.k] < b.r.TimesS[next] {
+		b.k++
+	}
+	if !isGap && b.k == from {
+		return
+	}
+	left, right := knot{b.r.TimesS[i], b.r.C[i]}, knot{b.r.TimesS[next], b.r.C[next]}
+	var g *gap
+	if isGap {
+		g = &gap{interval: interval{left.t, right.t}}
+		g.lo, g.hi = b.air.bounds(b.r, b.u, i, next, g.interval)
+	}
+	b.u.stretch(b.ends[from:b.k], left, right, g, false)
+}
+
+// after lays out what of the chain lies after the record.
+func (b *layer) after() {
+	if b.k == len(b.ends) {
+		return
+	}
+	g := gap{interval: interval{b.r.TimesS[b.last], b.ends[len(b.ends)-1]}, edge: 1}
+	g.lo, g.hi = b.air.bounds(b.r, b.u, b.last, b.last, g.interval)
+	b.u.stretch(b.ends[b.k:], knot{g.a, b.r.C[b.last]}, knot{g.b, b.r.C[b.last]}, &g, false)
 }
 
 // gapsAt tells whether the stretch before the knot m has a range of its own.
@@ -261,7 +288,7 @@ func newSurroundings(r *model.Recording) *surroundings {
 		s.hottest, s.coldest = s.foremost(r, 1), s.foremost(r, -1)
 		return s
 	}
-	s.stepS = usualStep(s.m.TimesS)
+	s.stepS = model.UsualStep(s.m.TimesS)
 	for i := 1; i < len(s.m.TimesS) && math.IsInf(s.hole, 1); i++ {
 		if s.m.TimesS[i]-s.m.TimesS[i-1] > farBeyond*s.stepS+sameS {
 			s.hole = s.m.TimesS[i-1]

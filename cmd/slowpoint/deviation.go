@@ -237,15 +237,17 @@ func (m *medium) walls(which int, planned model.Course) float64 {
 
 // mean is the mean of a course from its start to an instant, s; the last temperature goes on.
 func mean(c model.Course, until float64) float64 {
+	line := model.Trace{TimesS: c.TimesS, C: c.C}
 	sum, t, x := 0.0, 0.0, c.C[0]
+	add := func(at, next float64) { sum, t, x = sum+(at-t)*(x+next)/2, at, next }
 	for i, at := range c.TimesS {
 		if at >= until {
-			end := x + (c.C[i]-x)*(until-t)/max(at-t, 1e-9)
-			return (sum + (until-t)*(x+end)/2) / until
+			break
 		}
-		sum, t, x = sum+(at-t)*(x+c.C[i])/2, at, c.C[i]
+		add(at, c.C[i])
 	}
-	return (sum + (until-t)*x) / until
+	add(until, line.At(until))
+	return sum / until
 }
 
 // ends are the runs beside the one as read: every combination of the ends of the media, as far as there are not too many.
@@ -294,46 +296,53 @@ func (r *runner) surroundings(rec *workbook.Record, p *workbook.Product, out *re
 // mediumOf makes the course of a step of a record. The record must cover the step, which is as long as the row says, else as the plan
 // has it; lengths are those of the plan, s.
 func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, lengths []float64, m *report.Measured) (*medium, *cell.Error) {
-	air := &medium{step: stepNamed(p.Steps, rec.Step)}
+	air := &medium{step: stepNamed(p.Steps, rec.Step), errorK: errorOf(rec, log)}
 	st := &p.Steps[air.step]
 	if len(st.Medium.TimesS) == 0 {
 		return nil, fault(rec, "What it measured", rec.Measured, st.Name+" has no surroundings with a temperature", "name another step")
 	}
-	from, to, known, last := 0.0, 0.0, -1, 0.0 // known: the last step up to the record's own whose beginning was written down
-	at := map[int]float64{}                    // by step
-	for n, s := range rec.Starts {
-		t, wrong := startOf(rec, log, &s)
-		if wrong != nil {
-			return nil, wrong
-		}
-		if n > 0 && t <= last {
-			return nil, fault(rec, "Starts at", s.Typed, "is no later than the step before it", "write the steps in their order")
-		}
-		last = t
-		i := air.step // a time without a step is that of the record's own
-		if s.Step != "" {
-			i = stepNamed(p.Steps, s.Step)
-		}
-		if s.End {
-			i = len(p.Steps)
-		}
-		at[i] = t
-		switch {
-		case i <= air.step:
-			from, known = t, i
-		case i == air.step+1:
-			to, air.ended = t, true
-		}
+	from, wrong := air.times(rec, log, p.Steps, lengths)
+	if wrong != nil {
+		return nil, wrong
+	}
+	last := log.TimesS[len(log.TimesS)-1]
+	if st.UntilC != nil && !air.ended { // it may take longer than planned, up to its longest
+		air.durationS = max(air.durationS, min(st.DurationS, last-from))
+	}
+	to := from + air.durationS
+	reach := max(1.5*log.StepS, 1) // the course of the last reading goes on for one more
+	if to > last+reach {
+		return nil, fault(rec, "File", rec.File, fmt.Sprintf("ends at %s, and %s needs it up to %s", shown(log, last), st.Name, shown(log, to)), "write when the step began and ended in Starts at, or give the whole file")
+	}
+	if air.durationS <= 0 {
+		return nil, fault(rec, "Starts at", "", st.Name+" has no length by it", "correct it")
+	}
+	air.fill(log, p.Steps, from, to, m)
+	return air, nil
+}
+
+// times finds when the step began by the record's row, s from the first reading, and how long it and others were.
+func (air *medium) times(rec *workbook.Record, log *record.Log, steps []model.Step, lengths []float64) (from float64, wrong *cell.Error) {
+	starts, wrong := startsOf(rec, log, steps, air.step)
+	if wrong != nil {
+		return 0, wrong
 	}
 	air.others = map[int]float64{}
-	for i, t := range at {
-		if u, ok := at[i+1]; ok && i != air.step {
-			air.others[i] = u - t
+	to, known := 0.0, -1 // the last step up to the record's own whose beginning was written down
+	for n, b := range starts {
+		switch {
+		case b.step <= air.step:
+			from, known = b.t, b.step
+		case b.step == air.step+1:
+			to, air.ended = b.t, true
+		}
+		if n+1 < len(starts) && starts[n+1].step == b.step+1 && b.step != air.step {
+			air.others[b.step] = starts[n+1].t - b.t
 		}
 	}
-	if len(rec.Starts) > 0 {
+	if len(starts) > 0 {
 		if known < 0 {
-			return nil, fault(rec, "Starts at", rec.Starts[0].Typed, "does not say when "+st.Name+" began", "write when it began before it")
+			return 0, fault(rec, "Starts at", rec.Starts[0].Typed, "does not say when "+steps[air.step].Name+" began", "write when it began before it")
 		}
 		for ; known < air.step; known++ { // as long as the plan has them
 			from += lengths[known]
@@ -343,98 +352,39 @@ func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, length
 	if air.ended {
 		air.durationS = to - from
 	}
-	last = log.TimesS[len(log.TimesS)-1]
-	if st.UntilC != nil && !air.ended { // it may take longer than planned, up to its longest
-		air.durationS = max(air.durationS, min(st.DurationS, last-from))
-	}
-	to = from + air.durationS
-	reach := max(1.5*log.StepS, 1) // the course of the last reading goes on for one more
-	if to > last+reach {
-		return nil, fault(rec, "File", rec.File, fmt.Sprintf("ends at %s, and %s needs it up to %s", shown(log, last), st.Name, shown(log, to)), "write when the step began and ended in Starts at, or give the whole file")
-	}
-	if air.durationS <= 0 {
-		return nil, fault(rec, "Starts at", "", st.Name+" has no length by it", "correct it")
-	}
-	air.fill(log, p.Steps, from, to, errorOf(rec, log), m)
-	return air, nil
+	return from, nil
 }
 
 // fill makes the courses of the readings between two instants, s from the first. In a gap the medium may have been at anything between the
 // extremes of the whole record and of the surroundings that the plan has elsewhere: what stops a logger may have stopped a chiller.
-func (air *medium) fill(log *record.Log, steps []model.Step, from, to, errorK float64, m *report.Measured) {
-	i := 0
-	for i+1 < len(log.TimesS) && log.TimesS[i+1] <= from {
-		i++
+func (air *medium) fill(log *record.Log, steps []model.Step, from, to float64, m *report.Measured) {
+	x := stretch{log: log, from: from, to: to, gaps: map[int]int{}}
+	for x.i+1 < len(log.TimesS) && log.TimesS[x.i+1] <= from {
+		x.i++
 	}
-	j := i
-	for j+1 < len(log.TimesS) && log.TimesS[j] < to {
-		j++
+	for x.j = x.i; x.j+1 < len(log.TimesS) && log.TimesS[x.j] < to; {
+		x.j++
 	}
-	m.Readings, m.Before, m.After = j-i+1, i, len(log.TimesS)-1-j
-	lowest, highest := slices.Min(log.C), slices.Max(log.C)
-	air.errorK = errorK
-	for k := i; k <= j; k++ {
+	m.Readings, m.Before, m.After = x.j-x.i+1, x.i, len(log.TimesS)-1-x.j
+	for k := x.i; k <= x.j; k++ {
 		air.timesS, air.c = append(air.timesS, log.TimesS[k]-from), append(air.c, log.C[k])
 	}
-	elsewhere := elsewhere(steps, air.step)
-	lowest, highest = min(lowest, slices.Min(elsewhere)), max(highest, slices.Max(elsewhere))
-	gaps := map[int]int{} // by the reading before it: its number
 	for _, g := range log.Gaps {
-		if g >= i && g < j {
-			gaps[g] = len(gaps)
+		if g >= x.i && g < x.j {
+			x.gaps[g] = len(x.gaps)
 			m.Gaps = append(m.Gaps, [2]float64{log.TimesS[g] - from, log.TimesS[g+1] - from})
 		}
 	}
-	value := func(t float64) float64 { // straight lines; the last reading goes on
-		k := i
-		for k+1 < len(log.TimesS) && log.TimesS[k+1] < t {
-			k++
-		}
-		if k+1 >= len(log.TimesS) {
-			return log.C[k]
-		}
-		f := min(max((t-log.TimesS[k])/(log.TimesS[k+1]-log.TimesS[k]), 0), 1)
-		return log.C[k] + f*(log.C[k+1]-log.C[k])
-	}
-	const jump = 1e-3 // s, for a change at a gap's ends
-	of := func(shift float64, bound func(gap int) float64) model.Course {
-		c := model.Course{Name: m.Name}
-		add := func(t, x float64) {
-			if n := len(c.TimesS); n == 0 || t > c.TimesS[n-1] {
-				c.TimesS, c.C = append(c.TimesS, t), append(c.C, x+shift)
-			}
-		}
-		add(0, value(from))
-		for k := i; k <= j; k++ {
-			if t := log.TimesS[k] - from; t > 0 && t < to-from {
-				add(t, log.C[k])
-			}
-			if k+1 < len(log.TimesS) && bound != nil && log.TimesS[k+1]-log.TimesS[k] > sparseS { // it may have been at either all the time
-				end := min(log.C[k], log.C[k+1])
-				if shift > 0 {
-					end = max(log.C[k], log.C[k+1])
-				}
-				if _, lacking := gaps[k]; !lacking {
-					add(max(log.TimesS[k]-from, 0)+jump, end)
-					add(min(log.TimesS[k+1]-from, to-from)-jump, end)
-				}
-			}
-			if g, lacking := gaps[k]; lacking && bound != nil {
-				add(max(log.TimesS[k]-from, 0)+jump, bound(g))
-				add(min(log.TimesS[k+1]-from, to-from)-jump, bound(g))
-			}
-		}
-		add(to-from, value(to))
-		return simplified(c)
-	}
-	air.courses = []model.Course{of(0, nil)}
-	n := len(gaps)
+	elsewhere := elsewhere(steps, air.step)
+	lowest, highest := min(slices.Min(log.C), slices.Min(elsewhere)), max(slices.Max(log.C), slices.Max(elsewhere))
+	air.courses = []model.Course{x.course(m.Name, 0, nil)}
+	n := len(x.gaps)
 	if n > gapsTried {
 		n, air.manyGaps = 1, true // all together
 	}
-	for _, shift := range []float64{-errorK - simplifyK, errorK + simplifyK} {
+	for _, shift := range []float64{-air.errorK - simplifyK, air.errorK + simplifyK} {
 		for which := range 1 << n {
-			air.courses = append(air.courses, of(shift, func(g int) float64 {
+			air.courses = append(air.courses, x.course(m.Name, shift, func(g int) float64 {
 				if air.manyGaps {
 					g = 0
 				}
@@ -445,6 +395,50 @@ func (air *medium) fill(log *record.Log, steps []model.Step, from, to, errorK fl
 			}))
 		}
 	}
+}
+
+// stretch is what a log says of a step: the readings i to j, of which the step takes those between two instants, s from the first reading.
+type stretch struct {
+	log      *record.Log
+	i, j     int
+	from, to float64
+	gaps     map[int]int // by the reading before it: its number
+}
+
+// course is the surroundings of the step by straight lines between the readings, shifted by some K. With bound it is an end of what they leave
+// open: in a gap at bound, and between readings that are far apart at the one of the two on the side of the shift.
+func (x *stretch) course(name string, shift float64, bound func(gap int) float64) model.Course {
+	const jump = 1e-3 // s, for a change at a gap's ends
+	log := x.log
+	line := model.Trace{TimesS: log.TimesS, C: log.C} // the last reading goes on
+	c := model.Course{Name: name}
+	add := func(t, temp float64) {
+		if n := len(c.TimesS); n == 0 || t > c.TimesS[n-1] {
+			c.TimesS, c.C = append(c.TimesS, t), append(c.C, temp+shift)
+		}
+	}
+	stays := func(k int, temp float64) { // from the reading k to the next
+		add(max(log.TimesS[k]-x.from, 0)+jump, temp)
+		add(min(log.TimesS[k+1]-x.from, x.to-x.from)-jump, temp)
+	}
+	add(0, line.At(x.from))
+	for k := x.i; k <= x.j; k++ {
+		if t := log.TimesS[k] - x.from; t > 0 && t < x.to-x.from {
+			add(t, log.C[k])
+		}
+		g, lacking := x.gaps[k]
+		switch {
+		case bound == nil || k+1 == len(log.TimesS):
+		case lacking:
+			stays(k, bound(g))
+		case log.TimesS[k+1]-log.TimesS[k] > sparseS && shift > 0: // it may have been at either all the time
+			stays(k, max(log.C[k], log.C[k+1]))
+		case log.TimesS[k+1]-log.TimesS[k] > sparseS:
+			stays(k, min(log.C[k], log.C[k+1]))
+		}
+	}
+	add(x.to-x.from, line.At(x.to))
+	return simplified(c)
 }
 
 // elsewhere are the planned temperatures of a step's own surroundings and of those that it may come to when its equipment stops, °C: those of

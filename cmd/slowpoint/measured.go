@@ -78,30 +78,20 @@ func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths 
 		return nil, fault(rec, "Product", "", "has no steps in the plan", "add them to the sheet Steps, or judge the record with --stages")
 	}
 	given := map[int]float64{} // by step
-	end, at := log.TimesS[len(log.TimesS)-1], 0.0
+	end := log.TimesS[len(log.TimesS)-1]
 	r := &ran{}
-	for n, s := range rec.Starts {
-		i := 0
-		if s.Step != "" {
-			i = stepNamed(steps, s.Step)
+	starts, wrong := startsOf(rec, log, steps, 0)
+	if wrong != nil {
+		return nil, wrong
+	}
+	for n, b := range starts {
+		if b.t > end {
+			return nil, fault(rec, "Starts at", rec.Starts[n].Typed, fmt.Sprintf("lies outside the readings, which go from %s to %s", shown(log, 0), shown(log, end)), "correct the time, or the file")
 		}
-		if s.End {
-			i = len(steps)
-		}
-		t, wrong := startOf(rec, log, &s)
-		if wrong != nil {
-			return nil, wrong
-		}
-		if n > 0 && t <= at {
-			return nil, fault(rec, "Starts at", s.Typed, "is no later than the step before it", "write the steps in their order")
-		}
-		if t > end {
-			return nil, fault(rec, "Starts at", s.Typed, fmt.Sprintf("lies outside the readings, which go from %s to %s", shown(log, 0), shown(log, end)), "correct the time, or the file")
-		}
-		if n == 0 {
-			r.first = i
-		}
-		given[i], at = t, t
+		given[b.step] = b.t
+	}
+	if len(starts) > 0 {
+		r.first = starts[0].step
 	}
 	if len(rec.Starts) == 0 {
 		given[0] = 0
@@ -156,6 +146,36 @@ func stepNamed(steps []model.Step, name string) int {
 }
 
 const day = 24 * time.Hour
+
+// began is when a step began.
+type began struct {
+	step int     // the number of steps: the chain ended
+	t    float64 // s from the first reading
+}
+
+// startsOf are the times of Starts at, which rise. A time without a step is that of the step bare.
+func startsOf(rec *workbook.Record, log *record.Log, steps []model.Step, bare int) ([]began, *cell.Error) {
+	var out []began
+	for n := range rec.Starts {
+		s := &rec.Starts[n]
+		t, wrong := startOf(rec, log, s)
+		if wrong != nil {
+			return nil, wrong
+		}
+		if n > 0 && t <= out[n-1].t {
+			return nil, fault(rec, "Starts at", s.Typed, "is no later than the step before it", "write the steps in their order")
+		}
+		b := began{bare, t}
+		if s.Step != "" {
+			b.step = stepNamed(steps, s.Step)
+		}
+		if s.End {
+			b.step = len(steps)
+		}
+		out = append(out, b)
+	}
+	return out, nil
+}
 
 // startOf is a start in s from the first reading.
 func startOf(rec *workbook.Record, log *record.Log, s *workbook.Start) (float64, *cell.Error) {
@@ -504,26 +524,9 @@ func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.
 	if rec.Of == workbook.AtOther {
 		return
 	}
-	steps := append([]model.Step(nil), p.Steps...)
-	before := 0.0
-	for i, s := range lengthsOf(p.Steps, out.History) {
-		if i < way.first {
-			steps[i].DurationS, steps[i].UntilC = s, nil
-			before += s
-		}
-	}
-	for i := 0; i+1 < len(way.startS); i++ {
-		steps[way.first+i].DurationS, steps[way.first+i].UntilC = way.startS[i+1]-way.startS[i], nil
-	}
-	steps = steps[:way.first+len(way.startS)-1]
 	a := &report.Against{Place: rec.Place.Place, PlaceName: rec.Measured}
-	for _, air := range media {
-		if air.step < len(steps) && air.durationS > steps[air.step].DurationS-1 {
-			air.into(&steps[air.step], 0)
-			a.Air = true
-			steps[air.step].DurationS = min(steps[air.step].DurationS, air.durationS)
-		}
-	}
+	steps, before, air := asItWas(p.Steps, lengthsOf(p.Steps, out.History), way, media)
+	a.Air = air
 	h, err := model.Solve(p.Product, steps, model.Options{})
 	if err != nil {
 		m.Problems.Add(cell.Error{At: rec.At, Level: cell.Note, Msg: "The record was not compared with the prediction, which cannot be made for steps as long as they were: " + oneLine(err)})
@@ -540,44 +543,74 @@ func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.
 		}
 	}
 	stride := max(1, (len(re.TimesS)+mostCompared-1)/mostCompared)
-	var c []float64
+	var on, c []float64 // the times on the clock of the prediction, and what was read
 	for i := 0; i < len(re.TimesS); i += stride {
-		a.TimesS, c = append(a.TimesS, re.TimesS[i]), append(c, re.C[i])
+		a.TimesS, on, c = append(a.TimesS, re.TimesS[i]), append(on, before+re.TimesS[i]), append(c, re.C[i])
 	}
-	on := make([]float64, len(a.TimesS))
-	for i, t := range a.TimesS {
-		on[i] = before + t
-	}
+	a.Readings = len(on)
 	a.C = make([]float64, len(on))
 	h.Course(a.Place, on, a.C)
-	a.Readings = len(on)
-	slow := make([]float64, len(on))
-	h.Course(slowest, on, slow)
+	var slow []float64
+	if rec.Of == workbook.AtPoint {
+		slow = make([]float64, len(on))
+		h.Course(slowest, on, slow)
+	}
+	differ(a, re.Spans, c, slow)
+	r.fit.fitTo(&p.Product, steps, way.first, on, c, rec.AccuracyK, m.ResolutionK, a)
+	m.Against = a
+}
+
+// asItWas are the steps of a chain up to the end of a record, as long as they were, those before the record as long as in lengths (s, before in all),
+// and in the surroundings that were recorded; air tells whether there are any.
+func asItWas(plan []model.Step, lengths []float64, way *ran, media []*medium) (steps []model.Step, before float64, air bool) {
+	steps = append([]model.Step(nil), plan[:way.first+len(way.startS)-1]...)
+	for i := range steps {
+		long := lengths[i]
+		if i < way.first {
+			before += long
+		} else {
+			long = way.startS[i-way.first+1] - way.startS[i-way.first]
+		}
+		steps[i].DurationS, steps[i].UntilC = long, nil
+	}
+	for _, m := range media {
+		if m.step < len(steps) && m.durationS > steps[m.step].DurationS-1 {
+			m.into(&steps[m.step], 0)
+			steps[m.step].DurationS = min(steps[m.step].DurationS, m.durationS)
+			air = true
+		}
+	}
+	return steps, before, air
+}
+
+// differ fills in how far a record lies from the prediction beside it; c are its readings, and slow the prediction of the slowest place, nil where that
+// is of no account.
+func differ(a *report.Against, spans []model.Span, c, slow []float64) {
 	k := 0
-	for i := range on {
+	for i := range c {
 		d := c[i] - a.C[i]
-		a.BiasK += d / float64(len(on))
-		a.RMSK += d * d / float64(len(on))
-		for k+1 < len(re.Spans) && a.TimesS[i] > re.Spans[k].EndS {
+		a.BiasK += d / float64(len(c))
+		a.RMSK += d * d / float64(len(c))
+		for k+1 < len(spans) && a.TimesS[i] > spans[k].EndS {
 			k++
 		}
-		heats := re.Spans[k].Step.Stage != nil && re.Spans[k].Step.Stage.Heats
-		beyond := slow[i] - a.C[i]
-		if heats {
-			beyond = -beyond
+		worse := 1.0 // warmer
+		if spans[k].Step.Stage != nil && spans[k].Step.Stage.Heats {
+			worse = -1
 			if -d > a.ColderK {
 				a.ColderK, a.ColderS = -d, a.TimesS[i]
 			}
 		} else if d > a.WarmerK {
 			a.WarmerK, a.WarmerS = d, a.TimesS[i]
 		}
-		if rec.Of == workbook.AtPoint && beyond > a.SlowestK {
+		if slow == nil {
+			continue
+		}
+		if beyond := worse * (slow[i] - a.C[i]); beyond > a.SlowestK {
 			a.SlowestK, a.SlowestS = beyond, a.TimesS[i]
 		}
 	}
 	a.RMSK = math.Sqrt(a.RMSK)
-	r.fit.fitTo(&p.Product, steps, way.first, on, c, rec.AccuracyK, m.ResolutionK, a)
-	m.Against = a
 }
 
 // slowestPlace is the coldest place at the end of the last step that heats, or the warmest at the end of a chain without one.

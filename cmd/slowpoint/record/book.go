@@ -70,7 +70,7 @@ func (r *reader) openBook(size int64) (source, bool) {
 	}
 	data, err := os.ReadFile(r.set.File)
 	if err != nil {
-		return refuse(noFile, reason(err))
+		return refuse(noFile, workbook.Reason(err))
 	}
 	b, err := workbook.OpenBook(data)
 	if err != nil {
@@ -113,14 +113,14 @@ func (r *reader) choose(b *workbook.Book) string {
 	}
 	switch {
 	case r.set.Sheet != "":
-		return tell(noSheet, r.set.Sheet, r.set.Name, joined(quotes(open), " and "))
+		return tell(noSheet, r.set.Sheet, r.set.Name, workbook.Joined(quotes(open), " and "))
 	case len(open) == 0:
 		return tell(noReadings, "", r.set.Name, " in a sheet that is not hidden")
 	case len(open) > 1:
-		return tell(askSheet, "", r.set.Name, joined(quotes(open), " and "))
+		return tell(askSheet, "", r.set.Name, workbook.Joined(quotes(open), " and "))
 	}
 	if len(unseen) > 0 {
-		r.problems.Add(hiddenSheets.problem(at, cell.Warning, setSheet, "", r.set.Name, joined(unseen, " and "), quote(open[0])))
+		r.problems.Add(hiddenSheets.problem(at, cell.Warning, setSheet, "", r.set.Name, workbook.Joined(unseen, " and "), quote(open[0])))
 	}
 	return open[0]
 }

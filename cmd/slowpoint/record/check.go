@@ -7,6 +7,7 @@ import (
 	"strings"
 	"time"
 
+	"slowpoint/model"
 	"slowpoint/model/cell"
 )
 
@@ -37,19 +38,12 @@ func (r *reader) check(t *taker, start float64) {
 	r.years(t)
 }
 
-// gapTimes is how many times the usual time between two readings may pass without one; more is a gap.
-const gapTimes = 3
-
 // gaps finds the usual step, and where readings are lacking.
 func (r *reader) gaps(t *taker, start float64) {
 	log := r.log
 	n := len(log.TimesS)
-	steps := make([]float64, 0, n)
-	for i := 1; i < n; i++ {
-		steps = append(steps, log.TimesS[i]-log.TimesS[i-1])
-	}
-	log.StepS = median(steps)
-	most := gapTimes * log.StepS
+	log.StepS = model.UsualStep(log.TimesS)
+	most := model.GapTimes * log.StepS
 	if n < 2 {
 		return
 	}

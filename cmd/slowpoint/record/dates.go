@@ -6,6 +6,7 @@ import (
 	"math/bits"
 	"time"
 
+	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model/cell"
 )
 
@@ -121,7 +122,7 @@ func (t *taker) order() (order, bool) {
 	for i := range t.seen {
 		if ways := t.seen[i].ways(all); len(ways) > 1 {
 			d := &t.seen[i]
-			t.r.ask(askOrder, setOrder, "", quote(d.text), t.r.row(d.line), joined(ways, " or "))
+			t.r.ask(askOrder, setOrder, "", quote(d.text), t.r.row(d.line), workbook.Joined(ways, " or "))
 			return 0, false
 		}
 	}
@@ -191,5 +192,5 @@ func (t *taker) noOrder() {
 			}
 		}
 	}
-	t.tell(noOrder, d.line, t.dateCol(), d.text, joined(why, ", and "))
+	t.tell(noOrder, d.line, t.dateCol(), d.text, workbook.Joined(why, ", and "))
 }

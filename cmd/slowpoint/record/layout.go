@@ -375,7 +375,7 @@ func (r *reader) named(head []kept, at int, cols []int) string {
 		}
 		out = append(out, fmt.Sprintf("%s (%s)", quote(name), cell.ColumnName(c)))
 	}
-	return joined(out, " and ")
+	return workbook.Joined(out, " and ")
 }
 
 // alike counts the headings of the same words.

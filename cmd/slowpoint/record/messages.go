@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"sort"
 	"strconv"
-	"strings"
 
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model/cell"
@@ -220,14 +219,7 @@ func listing(of source, lines []int32, n int) string {
 	if more := n - len(lines); more > 0 {
 		names = append(names, fmt.Sprintf("%d more", more))
 	}
-	return word + " " + joined(names, " and ")
-}
-
-func joined(words []string, last string) string {
-	if len(words) < 2 {
-		return strings.Join(words, "")
-	}
-	return strings.Join(words[:len(words)-1], ", ") + last + words[len(words)-1]
+	return word + " " + workbook.Joined(names, " and ")
 }
 
 // shorten keeps what is quoted to a length that can be read.

@@ -169,7 +169,7 @@ func (r *reader) broken(err error) {
 	case errMany:
 		r.problems.Add(tooMany.problem(at, cell.Fault, setFile, r.set.Name, fmt.Sprint(r.most)))
 	default:
-		r.problems.Add(noFile.problem(at, cell.Fault, setFile, r.set.Name, reason(err)))
+		r.problems.Add(noFile.problem(at, cell.Fault, setFile, r.set.Name, workbook.Reason(err)))
 	}
 }
 

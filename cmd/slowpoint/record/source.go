@@ -4,13 +4,13 @@ import (
 	"bytes"
 	"crypto/sha256"
 	"encoding/hex"
-	"errors"
 	"fmt"
 	"hash"
 	"io"
 	"os"
 	"strings"
 
+	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model/cell"
 )
 
@@ -185,7 +185,7 @@ func (r *reader) open() (source, bool) {
 	info, err := os.Stat(r.set.File)
 	switch {
 	case err != nil:
-		return refuse(noFile, reason(err))
+		return refuse(noFile, workbook.Reason(err))
 	case info.IsDir():
 		return refuse(isFolder)
 	case !info.Mode().IsRegular():
@@ -197,7 +197,7 @@ func (r *reader) open() (source, bool) {
 	}
 	head, err := beginning(r.set.File)
 	if err != nil {
-		return refuse(noFile, reason(err))
+		return refuse(noFile, workbook.Reason(err))
 	}
 	if what := otherKind(head); what != "" {
 		return refuse(notText, what)
@@ -263,13 +263,4 @@ func binary(head []byte) string {
 		return "a file of the logger's own program"
 	}
 	return ""
-}
-
-// reason is the plain cause of a failed file operation.
-func reason(err error) string {
-	var pe *os.PathError
-	if errors.As(err, &pe) {
-		return pe.Err.Error()
-	}
-	return err.Error()
 }

@@ -6,6 +6,7 @@ import (
 	"slices"
 	"time"
 
+	"slowpoint/model"
 	"slowpoint/model/cell"
 	"slowpoint/model/unit"
 )
@@ -282,16 +283,8 @@ func (t *taker) wentBack(i, j int, d float64) {
 	t.tell(s, t.lines[j], t.lay.time, t.timeAt(j), at, t.timeAt(i))
 }
 
-// usual is the median of the first steps forward, s.
-func (t *taker) usual() float64 {
-	var steps []float64
-	for i := 1; i < len(t.secs) && len(steps) < 1000; i++ {
-		if d := t.secs[i] - t.secs[i-1]; d > 0 {
-			steps = append(steps, d)
-		}
-	}
-	return median(steps)
-}
+// usual is the usual step among the first readings, s.
+func (t *taker) usual() float64 { return model.UsualStep(t.secs[:min(len(t.secs), 1000)]) }
 
 // timeAt writes a time as it was understood.
 func (t *taker) timeAt(i int) string { return t.r.shown(t.form, t.secs[i]) }
@@ -319,13 +312,4 @@ func spanOf(s float64) string {
 		return fmt.Sprintf("%.4g s", s)
 	}
 	return unit.Lasting(s, nil)
-}
-
-// median sorts and gives the middle one, the lower of two; 0 of none.
-func median(x []float64) float64 {
-	if len(x) == 0 {
-		return 0
-	}
-	slices.Sort(x)
-	return x[(len(x)-1)/2]
 }

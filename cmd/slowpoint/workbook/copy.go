@@ -41,7 +41,7 @@ func CopyRows(rows Rows, planPath string, w io.Writer) (there, notCarried []stri
 	}
 	old, err := os.ReadFile(planPath)
 	if err != nil {
-		return nil, nil, fmt.Errorf("%s: it cannot be read (%s)", planPath, reason(err))
+		return nil, nil, fmt.Errorf("%s: it cannot be read (%s)", planPath, Reason(err))
 	}
 	out, there, notCarried, err := copyRows(rows, old)
 	if err != nil {

@@ -35,8 +35,8 @@ const (
 // readFolder reads the sheets of a folder.
 func readFolder(folder string) ([]*Grid, string, error) { return readFiles(os.DirFS(folder), folder) }
 
-// reason is the plain cause of a failed file operation.
-func reason(err error) string {
+// Reason is the plain cause of a failed file operation.
+func Reason(err error) string {
 	var pe *os.PathError
 	if errors.As(err, &pe) {
 		return pe.Err.Error()

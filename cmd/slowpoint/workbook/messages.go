@@ -227,12 +227,13 @@ func (s saying) problem(at cell.Ref, level cell.Level, field, typed string, args
 }
 
 // or joins words: "a, b or c".
-func or(words []string) string { return joined(words, " or ") }
+func or(words []string) string { return Joined(words, " or ") }
 
 // and joins words: "a, b and c".
-func and(words []string) string { return joined(words, " and ") }
+func and(words []string) string { return Joined(words, " and ") }
 
-func joined(words []string, last string) string {
+// Joined joins words, the last one by a word of its own: "a, b or c".
+func Joined(words []string, last string) string {
 	if len(words) < 2 {
 		return strings.Join(words, "")
 	}

@@ -38,7 +38,7 @@ func Look(name string) (os.FileInfo, error) {
 	case errors.Is(err, os.ErrNotExist):
 		return nil, fmt.Errorf("%s: there is no such file or folder; look at the spelling of its name", name)
 	case err != nil:
-		return nil, fmt.Errorf("%s: it cannot be opened (%s)", name, reason(err))
+		return nil, fmt.Errorf("%s: it cannot be opened (%s)", name, Reason(err))
 	}
 	return info, nil
 }
@@ -71,7 +71,7 @@ func readFile(name string, size int64, what string) (data []byte, digest string,
 		return nil, "", fmt.Errorf("%s: the file is larger than %d MB, too large for a %s; take out pictures and sheets that do not belong to it, or divide it into several", name, mostFile>>20, what)
 	}
 	if data, err = os.ReadFile(name); err != nil {
-		return nil, "", fmt.Errorf("%s: it cannot be read (%s)", name, reason(err))
+		return nil, "", fmt.Errorf("%s: it cannot be read (%s)", name, Reason(err))
 	}
 	sum := sha256.Sum256(data)
 	return data, hex.EncodeToString(sum[:]), nil

@@ -205,7 +205,7 @@ func (rec *Record) measured(l *Line, of []*product, r *reader) {
 		if len(of) == 1 {
 			known = append(known, names(of[0].Points, func(p model.Point) string { return p.Name })...)
 		}
-		l.Fault("What it measured", w, recordPlace, meant(w, known), joined(known, " or "))
+		l.Fault("What it measured", w, recordPlace, meant(w, known), Joined(known, " or "))
 	}
 }
 

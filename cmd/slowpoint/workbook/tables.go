@@ -78,7 +78,7 @@ type Spreadsheet struct {
 func ReadSpreadsheet(name string) (*Spreadsheet, error) {
 	info, err := os.Stat(name)
 	if err != nil {
-		return nil, fmt.Errorf("%s: it cannot be opened (%s)", name, reason(err))
+		return nil, fmt.Errorf("%s: it cannot be opened (%s)", name, Reason(err))
 	}
 	data, digest, err := readFile(name, info.Size(), "spreadsheet")
 	if err != nil {

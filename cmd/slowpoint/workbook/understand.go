@@ -33,7 +33,7 @@ func newReader(p *Plan, list []*Sheet) *reader {
 func readFiles(files fs.FS, folder string) ([]*Grid, string, error) {
 	list, err := fs.ReadDir(files, ".")
 	if err != nil {
-		return nil, "", fmt.Errorf("the folder %s cannot be read: %v", folder, reason(err))
+		return nil, "", fmt.Errorf("the folder %s cannot be read: %v", folder, Reason(err))
 	}
 	sum := sha256.New()
 	var grids []*Grid
@@ -51,7 +51,7 @@ func readFiles(files fs.FS, folder string) ([]*Grid, string, error) {
 		}
 		data, err := fs.ReadFile(files, f.Name())
 		if err != nil {
-			return nil, "", fmt.Errorf("%s cannot be read: %v", path, reason(err))
+			return nil, "", fmt.Errorf("%s cannot be read: %v", path, Reason(err))
 		}
 		fmt.Fprintf(sum, "%s %d\n", f.Name(), len(data))
 		sum.Write(data)
