@@ -334,6 +334,9 @@ func (d *reading) blame(l *Limit, t *track, f *Finding) string {
 		}
 		g := u.gaps[i]
 		key := map[int]string{-1: "tube gap before", 0: "tube gap", 1: "tube gap after"}[g.edge]
+		if g.edge == 0 && g.lo <= anyLowC && g.hi >= anyHighC {
+			key = "tube gap bare"
+		}
 		return say(key, holes{"from": clockTime(g.a), "until": clockTime(g.b), "long": lasting(g.b-g.a, 0), "low": l.degrees(g.lo, -1), "high": l.degrees(g.hi, 1)})
 	}
 	long := 0.0

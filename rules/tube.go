@@ -39,9 +39,7 @@ type tube struct {
 	gaps   []gap
 	spans  []model.Span // without what lies less than a usual interval or three before the first and after the last reading
 	usualS float64      // the median time between two readings, s
-	lowest float64      // reading, °C
-	most   float64
-	soFar  region // of the readings, while the tube is laid out
+	soFar  region       // of the readings, while the tube is laid out
 }
 
 // choice is how a course runs between two knots: through up to two temperatures for an instant at its start, then at a level.
@@ -85,7 +83,7 @@ func check(r *model.Recording) error {
 // or to that reading, and how many make a gap.
 const farBeyond = model.GapTimes
 
-// Where nothing was measured at the edge of a record and no medium is known, a place may have been at anything that food comes to, °C.
+// Where nothing was measured and no medium is known, a place may have been at anything that food comes to, °C.
 const anyLowC, anyHighC = -80, 300
 
 // newTube lays out what a recording allows, without the readings in without (rising).
@@ -118,7 +116,7 @@ type layer struct {
 
 // newLayer finds what the readings that are not left out say as a whole.
 func newLayer(r *model.Recording, without []int) *layer {
-	u := &tube{usualS: model.UsualStep(r.TimesS), lowest: math.Inf(1), most: math.Inf(-1), soFar: region{lo: math.Inf(1), hi: math.Inf(-1)}}
+	u := &tube{usualS: model.UsualStep(r.TimesS), soFar: region{lo: math.Inf(1), hi: math.Inf(-1)}}
 	n := len(r.TimesS)
 	b := &layer{u: u, r: r, out: make(map[int]bool, len(without)), gaps: map[int]bool{}, last: n - 1}
 	for _, i := range without {
@@ -129,11 +127,6 @@ func newLayer(r *model.Recording, without []int) *layer {
 	}
 	for b.last > b.first && b.out[b.last] {
 		b.last--
-	}
-	for i := b.first; i <= b.last; i++ {
-		if !b.out[i] {
-			u.lowest, u.most = math.Min(u.lowest, r.C[i]), math.Max(u.most, r.C[i])
-		}
 	}
 	u.spans = clipped(r.Spans, r.TimesS[b.first], r.TimesS[b.last], farBeyond*u.usualS)
 	b.ends = u.ends()
@@ -371,7 +364,7 @@ func (s *surroundings) foremost(r *model.Recording, sign float64) float64 {
 // range of what the food was at and of all surroundings that it has had since (maximum principle): after a cook, places beside the
 // probe may be hotter than it and than the air, and it rises. So the medium counts from the start of the record, not of the gap, unless
 // the measured place was the hottest (coldest) one before.
-// Where the medium was not recorded, the range known of it counts; where none is, that of the whole record.
+// Where the medium was not recorded, the range known of it counts; where none is, nothing is known: it may have been anything.
 func (s *surroundings) bounds(r *model.Recording, u *tube, i, k int, iv interval) (lo, hi float64) {
 	lo, hi = math.Min(r.C[i], r.C[k]), math.Max(r.C[i], r.C[k])
 	slack := farBeyond * s.stepS
@@ -380,10 +373,8 @@ func (s *surroundings) bounds(r *model.Recording, u *tube, i, k int, iv interval
 		lo, hi = math.Min(lo, s.lo[n]), math.Max(hi, s.hi[n])
 	} else if !math.IsNaN(r.LowC) && !math.IsNaN(r.HighC) {
 		lo, hi = math.Min(lo, r.LowC), math.Max(hi, r.HighC)
-	} else if i == k {
-		return anyLowC, anyHighC
 	} else {
-		return math.Min(lo, u.lowest), math.Max(hi, u.most)
+		return anyLowC, anyHighC
 	}
 	if !(s.coldest <= iv.a) {
 		lo = math.Min(lo, u.soFar.lo)

@@ -24,14 +24,25 @@ const (
 	endSpreads  = 6
 )
 
-// corner is where each spread of a product stands: −1 at its Minus end, 0 as typed, 1 at its Plus end.
+// corner is where each spread of a product stands: −1 at its Minus end, 0 as typed, 1 at its Plus end; ±(1+n) is n parts of the way to
+// an end.
 type corner []int8
+
+// parts is how many there are of the way from the typed value to an end.
+const parts = 64
 
 // places are the same as workbook.Varied takes them.
 func (c corner) places() []float64 {
 	out := make([]float64, len(c))
 	for i, v := range c {
-		out[i] = float64(v)
+		switch {
+		case v > 1:
+			out[i] = float64(v-1) / parts
+		case v < -1:
+			out[i] = float64(v+1) / parts
+		default:
+			out[i] = float64(v)
+		}
 	}
 	return out
 }
@@ -50,7 +61,12 @@ func (c corner) nominal() bool { return !slices.ContainsFunc(c, func(v int8) boo
 func (c corner) words(p *workbook.Product) []string {
 	var out []string
 	for i, v := range c {
-		if v != 0 {
+		switch {
+		case v > 1:
+			out = append(out, fmt.Sprintf("%d/%d of %s", v-1, parts, p.Spreads[i].End(1)))
+		case v < -1:
+			out = append(out, fmt.Sprintf("%d/%d of %s", -v-1, parts, p.Spreads[i].End(-1)))
+		case v != 0:
 			out = append(out, p.Spreads[i].End(int(v)))
 		}
 	}
@@ -69,7 +85,7 @@ type search struct {
 func (c corner) key() string {
 	b := make([]byte, len(c))
 	for i, v := range c {
-		b[i] = byte(v + 1)
+		b[i] = byte(v)
 	}
 	return string(b)
 }
@@ -222,7 +238,78 @@ func (s *search) corners() ([]corner, error) {
 			}
 		}
 	}
-	return worst, s.climb(worst)
+	if err := s.climb(worst); err != nil {
+		return nil, err
+	}
+	return worst, s.between(worst)
+}
+
+// between moves the corner of each limit that is met there to places between the ends where that makes it clearly worse, and on from there. A
+// clock that starts at a temperature makes the worst start lie just above it, and what is below never starts it.
+func (s *search) between(worst []corner) error {
+	zero := make(corner, len(s.p.Spreads))
+	next := make([][]corner, len(worst))
+	var list []corner
+	for k, c := range worst {
+		if s.at(c)[k].Verdict != rules.Met {
+			continue
+		}
+		for i := range c {
+			for _, v := range s.inner(i, s.at(zero)) {
+				next[k] = append(next[k], c.with(i, v))
+			}
+		}
+		list = append(list, next[k]...)
+	}
+	if err := s.need(list); err != nil {
+		return err
+	}
+	moved := false
+	for k := range worst {
+		for _, c := range next[k] {
+			if a, b := &s.at(c)[k], &s.at(worst[k])[k]; rules.Worse(a, b) && apart(a, b) {
+				worst[k], moved = c, true
+			}
+		}
+	}
+	if !moved {
+		return nil
+	}
+	return s.climb(worst)
+}
+
+// inner are places of a spread between its ends: half way to each, and of temperatures the quarters and those that bring the start just to
+// either side of where a limit begins to count.
+func (s *search) inner(i int, typed []rules.Finding) []int8 {
+	sp := &s.p.Spreads[i]
+	within := []int{parts / 2}
+	if strings.HasSuffix(sp.Of.Name, "temperature") {
+		within = []int{parts / 4, parts / 2, parts * 3 / 4}
+	}
+	minus, plus := s.p.Span(i)
+	var out []int8
+	for _, side := range []struct {
+		sign int
+		by   float64
+	}{{-1, minus}, {1, plus}} {
+		if !(side.by > 0) {
+			continue
+		}
+		here := slices.Clone(within)
+		for k := range typed {
+			if from := typed[k].Limit.FromC; from != nil && sp.Of.Name == "start temperature" {
+				n := int(math.Floor((*from - s.p.StartC) * float64(side.sign) / side.by * parts))
+				here = append(here, n-1, n, n+1, n+2)
+			}
+		}
+		slices.Sort(here)
+		for _, n := range slices.Compact(here) {
+			if n > 0 && n < parts {
+				out = append(out, int8(side.sign*(1+n)))
+			}
+		}
+	}
+	return out
 }
 
 // slowing gives the ends at which heat moves slowly through a food, by quantity: 1 is Plus. Those of temperatures and durations depend on
@@ -387,23 +474,28 @@ const (
 	toldS = 1.0
 )
 
-// telling is the corner of a limit with the ends that hardly matter left as typed, such as a cook's oven for a limit on chilling. If none of
-// them matters it is the corner itself.
-func (s *search) telling(k int, c corner) corner {
-	at := &s.at(c)[k]
-	apart := func(a, b *float64, least float64) bool {
+// apart tells whether two findings of a limit differ by what is told.
+func apart(a, b *rules.Finding) bool {
+	far := func(a, b *float64, least float64) bool {
 		if a == nil || b == nil {
 			return (a == nil) != (b == nil)
 		}
 		return math.Abs(*a-*b) >= least
 	}
+	return a.Verdict != b.Verdict || far(a.MarginK, b.MarginK, toldK) || far(a.MarginS, b.MarginS, toldS)
+}
+
+// telling is the corner of a limit with the ends that hardly matter left as typed, such as a cook's oven for a limit on chilling. If none of
+// them matters it is the corner itself.
+func (s *search) telling(k int, c corner) corner {
+	at := &s.at(c)[k]
 	out := c
 	for i := range c {
 		fs := s.at(c.with(i, 0))
 		if fs == nil {
 			continue
 		}
-		if f := &fs[k]; f.Verdict == at.Verdict && !apart(f.MarginK, at.MarginK, toldK) && !apart(f.MarginS, at.MarginS, toldS) {
+		if !apart(&fs[k], at) {
 			out = out.with(i, 0)
 		}
 	}

@@ -181,6 +181,48 @@ func TestCornerBehindAStepThatEndsAtATemperature(t *testing.T) {
 }
 
 // The walls of an oven that is colder are colder too.
+// A start just above where the clock begins to count is worse than either end: the warm end has its centre far above 60 °C when the faces
+// are cold, the cold end never starts the clock. Along a fine grid no piece that misses the limit lacks more than the place found.
+func TestWorstValueBetweenTheEnds(t *testing.T) {
+	r, p := wall()
+	p.Steps, p.StartC, p.Size.ThicknessM = p.Steps[1:], 64, 0.06
+	p.Steps[0].DurationS, *p.Steps[0].FilmW, p.Steps[0].Medium.C[0] = 36000, 200, 1
+	from, to, within := 60.0, 21.0, 62*60.0
+	r.plan.Limits = []rules.Limit{{Name: "Cold", Kind: rules.CoolWithin, Stages: []*model.Stage{model.Cool}, Applies: rules.Applies{All: true},
+		FromC: &from, ToC: &to, TimeS: &within, Clock: rules.Clock{Crossing: true}}}
+	p.Spreads = []workbook.Spread{vary("start temperature", -1, 8, 8, false)}
+	s := &search{r: r, p: p, solved: map[string][]rules.Finding{}}
+	worst, err := s.corners()
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, v := range []int8{-1, 0, 1} {
+		if got := s.at(corner{v})[0].Verdict; got == rules.NotMet {
+			t.Errorf("place %d: %v, so that the ends alone show it", v, got)
+		}
+	}
+	at := s.at(worst[0])
+	if at[0].Verdict != rules.NotMet || worst[0].places()[0] != -31.0/64 {
+		t.Errorf("%v at %v, want not met at -31/64", at[0].Verdict, worst[0].places())
+	}
+	if words := worst[0].words(p); len(words) != 1 || !strings.HasPrefix(words[0], "31/64 of ") {
+		t.Errorf("words %q", words)
+	}
+	var grid [][]float64
+	for k := -32; k <= 32; k++ {
+		grid = append(grid, []float64{float64(k) / 32})
+	}
+	found, err := s.solve(grid)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for k, f := range found {
+		if m := f[0].MarginS; f[0].Verdict == rules.NotMet && *m < *at[0].MarginS {
+			t.Errorf("%g leaves %g s, the place found %g s", grid[k][0], *m, *at[0].MarginS)
+		}
+	}
+}
+
 func TestWallsGoWithTheAir(t *testing.T) {
 	_, p := wall()
 	walls, rh := 110.0, 20.0
