@@ -294,7 +294,7 @@ func (r *reader) rows(t *table, from int, own map[int]bool) {
 				l.suffer(h.faults)
 			case !used[col]:
 				mend := ""
-				if c := row.Cells[j].Text[0]; g.commas && c >= '0' && c <= '9' {
+				if text := row.Cells[j].Text; g.commas && text != "" && text[0] >= '0' && text[0] <= '9' {
 					mend = "; a value with a decimal comma needs quotation marks"
 				}
 				e := noHeading.problem(t.ref(row.N, col), cell.Fault, "", row.Cells[j].Text, cell.ColumnName(col), mend)
