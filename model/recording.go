@@ -26,8 +26,15 @@ func (r *Recording) Line() (*History, error) {
 	return h, err
 }
 
-// GapTimes is how many times the usual time between two readings may pass without one; more is a gap.
-const GapTimes = 3
+// gapTimes is how many times the usual time between two readings may pass without one, and hourS how long at most, s; more is a gap. Rounds by
+// hand are made hourly (common practice, no source); what happened in longer times nobody saw, however usual they are.
+const (
+	gapTimes = 3
+	hourS    = 3600
+)
+
+// MostApartS is how far apart two readings may lie that are no gap, s, where usualS lie between them as a rule.
+func MostApartS(usualS float64) float64 { return min(gapTimes*usualS, hourS) }
 
 // UsualStep is the median time from a reading to a later one, the lower of two, s; 0 if there are none.
 func UsualStep(timesS []float64) float64 {

@@ -67,7 +67,7 @@ func (d *reading) medium() *track {
 		r := &model.Recording{Point: m.Point, Spans: d.r.Spans, TimesS: m.TimesS, C: m.C, ErrorK: d.r.ErrorK, LowC: anyLowC, HighC: anyHighC}
 		usual := model.UsualStep(m.TimesS)
 		for i := 0; i+1 < len(m.TimesS); i++ {
-			if m.TimesS[i+1]-m.TimesS[i] > farBeyond*usual+sameS {
+			if m.TimesS[i+1]-m.TimesS[i] > model.MostApartS(usual)+sameS {
 				r.Gaps = append(r.Gaps, i)
 			}
 		}
@@ -210,6 +210,9 @@ func (d *reading) bracketed(l *Limit, t *track) Finding {
 		return f
 	}
 	f.untold(tail)
+	if slices.ContainsFunc(t.u.gaps, gap.bare) { // what it lacks there has no number
+		m.k = f.MarginK
+	}
 	// no room is proved
 	for _, x := range []struct{ to, from **float64 }{{&f.MarginS, &m.s}, {&f.MarginK, &m.k}} {
 		if *x.to = *x.from; *x.to != nil && **x.to > 0 {
@@ -334,7 +337,7 @@ func (d *reading) blame(l *Limit, t *track, f *Finding) string {
 		}
 		g := u.gaps[i]
 		key := map[int]string{-1: "tube gap before", 0: "tube gap", 1: "tube gap after"}[g.edge]
-		if g.edge == 0 && g.lo <= anyLowC && g.hi >= anyHighC {
+		if g.edge == 0 && g.bare() {
 			key = "tube gap bare"
 		}
 		return say(key, holes{"from": clockTime(g.a), "until": clockTime(g.b), "long": lasting(g.b-g.a, 0), "low": l.degrees(g.lo, -1), "high": l.degrees(g.hi, 1)})

@@ -274,6 +274,16 @@ func TestGapInRecordedSurroundings(t *testing.T) {
 	}
 }
 
+// TestNoNumberWithoutBounds: what a limit lacks in a gap that nothing bounds has no number in K; the room of a straight line through it is none.
+func TestNoNumberWithoutBounds(t *testing.T) {
+	r := logged(t, "store 0-60", "0:4 10:4 20:5 | 40:5 50:4 60:4")
+	eight := 8.0
+	fs, err := FindRecorded([]Limit{{Kind: StayBelow, Stages: []*model.Stage{model.Store}, Applies: Applies{All: true}, ToC: &eight}}, Recorded{Recording: r})
+	if err != nil || len(fs) != 1 || fs[0].Verdict != CannotTell || fs[0].MarginK != nil {
+		t.Errorf("%+v, %v: want cannot tell without a margin", fs, err)
+	}
+}
+
 // TestGapWithoutSurroundings bounds a gap by what is known of the medium and, where the food may still hold heat, by what was read before.
 func TestGapWithoutSurroundings(t *testing.T) {
 	for _, x := range []struct {

@@ -30,6 +30,9 @@ type gap struct {
 	edge   int     // -1: before the first reading; 1: after the last one; 0: between two
 }
 
+// bare tells whether nothing bounds what was in a gap.
+func (g gap) bare() bool { return g.lo <= anyLowC && g.hi >= anyHighC }
+
 // tube is what the readings of a record allow.
 type tube struct {
 	t, c   []float64 // knots: readings, and the ends of steps between them at the straight-line value
@@ -37,7 +40,7 @@ type tube struct {
 	kept   []int     // knots that no course may leave out: the ends of the steps, rising
 	ranges []ranged  // rising
 	gaps   []gap
-	spans  []model.Span // without what lies less than a usual interval or three before the first and after the last reading
+	spans  []model.Span // without what lies no farther before the first and after the last reading than two readings may lie apart
 	usualS float64      // the median time between two readings, s
 	soFar  region       // of the readings, while the tube is laid out
 }
@@ -78,10 +81,6 @@ func check(r *model.Recording) error {
 	}
 	return nil
 }
-
-// farBeyond is by how many usual intervals a step may begin before the first reading or end after the last one and still be judged from
-// or to that reading, and how many make a gap.
-const farBeyond = model.GapTimes
 
 // Where nothing was measured and no medium is known, a place may have been at anything that food comes to, °C.
 const anyLowC, anyHighC = -80, 300
@@ -128,7 +127,7 @@ func newLayer(r *model.Recording, without []int) *layer {
 	for b.last > b.first && b.out[b.last] {
 		b.last--
 	}
-	u.spans = clipped(r.Spans, r.TimesS[b.first], r.TimesS[b.last], farBeyond*u.usualS)
+	u.spans = clipped(r.Spans, r.TimesS[b.first], r.TimesS[b.last], model.MostApartS(u.usualS))
 	b.ends = u.ends()
 	for _, g := range r.Gaps {
 		b.gaps[g] = true
@@ -283,7 +282,7 @@ func newSurroundings(r *model.Recording) *surroundings {
 	}
 	s.stepS = model.UsualStep(s.m.TimesS)
 	for i := 1; i < len(s.m.TimesS) && math.IsInf(s.hole, 1); i++ {
-		if s.m.TimesS[i]-s.m.TimesS[i-1] > farBeyond*s.stepS+sameS {
+		if s.m.TimesS[i]-s.m.TimesS[i-1] > model.MostApartS(s.stepS)+sameS {
 			s.hole = s.m.TimesS[i-1]
 		}
 	}
@@ -323,7 +322,7 @@ func (s *surroundings) foremost(r *model.Recording, sign float64) float64 {
 		known = r.LowC
 	}
 	switch {
-	case !same(r.Name, "slowest point"), s.m == nil && math.IsNaN(known), s.m != nil && s.m.TimesS[0] > r.TimesS[0]+farBeyond*s.stepS:
+	case !same(r.Name, "slowest point"), s.m == nil && math.IsNaN(known), s.m != nil && s.m.TimesS[0] > r.TimesS[0]+model.MostApartS(s.stepS):
 		return math.NaN()
 	}
 	until := len(r.TimesS)
@@ -367,7 +366,7 @@ func (s *surroundings) foremost(r *model.Recording, sign float64) float64 {
 // Where the medium was not recorded, the range known of it counts; where none is, nothing is known: it may have been anything.
 func (s *surroundings) bounds(r *model.Recording, u *tube, i, k int, iv interval) (lo, hi float64) {
 	lo, hi = math.Min(r.C[i], r.C[k]), math.Max(r.C[i], r.C[k])
-	slack := farBeyond * s.stepS
+	slack := model.MostApartS(s.stepS)
 	if s.m != nil && s.hole >= iv.b && s.m.TimesS[0] <= r.TimesS[0]+slack && s.m.TimesS[0] <= iv.a+slack && s.m.TimesS[len(s.m.TimesS)-1] >= iv.b-slack {
 		n := min(sort.SearchFloat64s(s.m.TimesS, iv.b), len(s.m.TimesS)-1)
 		lo, hi = math.Min(lo, s.lo[n]), math.Max(hi, s.hi[n])

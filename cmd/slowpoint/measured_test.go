@@ -528,8 +528,9 @@ func TestMean(t *testing.T) {
 	}
 }
 
-// TestDeviateWalls: an oven whose air was recorded colder radiates no longer as hot as planned.
-func TestDeviateWalls(t *testing.T) {
+// coldOven is a slab that is planned in the still air and between the walls of an oven of 180 °C, and a record of its air at 60 °C.
+func coldOven(t *testing.T) (*runner, *workbook.Product, *report.Product) {
+	t.Helper()
 	r, p := slabRunner(model.Cook, 0.04, 5, 180, 25, 5400, heatTo(70))
 	still, wet, hot, emissivity := p.Steps[0].Exposure, false, 180.0, 0.9
 	still.Surface, still.RadiatingC, still.Emissivity, still.Wet, still.FilmW = model.StillAir, &hot, &emissivity, &wet, nil
@@ -540,6 +541,12 @@ func TestDeviateWalls(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
+	return r, p, out
+}
+
+// TestDeviateWalls: an oven whose air was recorded colder radiates no longer as hot as planned.
+func TestDeviateWalls(t *testing.T) {
+	r, p, out := coldOven(t)
 	v, _ := r.deviate(p, out)
 	if out.Judgement.Verdict != rules.Met || v.Judgement.Verdict != rules.NotMet {
 		t.Errorf("as planned %v, in air of 60 °C %v: want met and not met", out.Judgement.Verdict, v.Judgement.Verdict)
@@ -549,16 +556,7 @@ func TestDeviateWalls(t *testing.T) {
 // TestAgainstWalls: a probe beside which the air was recorded is held against the prediction in that air, with walls as it makes them; where it read
 // what that prediction has, nothing is left between them.
 func TestAgainstWalls(t *testing.T) {
-	r, p := slabRunner(model.Cook, 0.04, 5, 180, 25, 5400, heatTo(70))
-	still, wet, hot, emissivity := p.Steps[0].Exposure, false, 180.0, 0.9
-	still.Surface, still.RadiatingC, still.Emissivity, still.Wet, still.FilmW = model.StillAir, &hot, &emissivity, &wet, nil
-	p.Steps[0].Exposure = still
-	at, air := minutesOf(92, func(m int) float64 { return 60 + 0.1*float64(m%2) })
-	withAir(t, r, at, air, 0.5)
-	out, err := r.judged(p)
-	if err != nil {
-		t.Fatal(err)
-	}
+	r, p, out := coldOven(t)
 	v, media := r.deviate(p, out)
 	at, core := minutesOf(90, func(m int) float64 { return v.History.At(model.Place{}, float64(m)*60) })
 	logFile(t, r.logs.folder, "core.csv", at, core)

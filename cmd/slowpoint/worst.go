@@ -463,9 +463,20 @@ func (r *runner) worst(p *workbook.Product, out *report.Product, typed []rules.F
 		if err := s.share(r.options.samples, r.options.seed, out.Worst); err != nil {
 			return err
 		}
+		for k := range findings {
+			findings[k].Verdict, findings[k].Why = drawn(&findings[k], out.Worst[k].Share)
+		}
 	}
 	out.Judgement = rules.Conclude(findings, r.plan.Groups)
 	return nil
+}
+
+// drawn is the verdict of a limit and its why beside the pieces that were drawn: a piece that misses a limit lies worse than the worst place found.
+func drawn(f *rules.Finding, s *report.Share) (rules.Verdict, string) {
+	if f.Verdict != rules.Met || s == nil || s.Met == s.Pieces {
+		return f.Verdict, f.Why
+	}
+	return rules.CannotTell, strings.TrimSuffix(f.Why, ".") + fmt.Sprintf("; but %d of %d pieces drawn from between the ends are not met, so it cannot be told.", s.Pieces-s.Met, s.Pieces)
 }
 
 // An end is told if leaving it moves the margin by this much, or the verdict.

@@ -12,6 +12,7 @@ import (
 
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
+	"slowpoint/report"
 	"slowpoint/rules"
 )
 
@@ -219,6 +220,26 @@ func TestWorstValueBetweenTheEnds(t *testing.T) {
 	for k, f := range found {
 		if m := f[0].MarginS; f[0].Verdict == rules.NotMet && *m < *at[0].MarginS {
 			t.Errorf("%g leaves %g s, the place found %g s", grid[k][0], *m, *at[0].MarginS)
+		}
+	}
+}
+
+// TestDrawnPiecesThatMiss: met at the worst place found is cannot tell where a drawn piece misses.
+func TestDrawnPiecesThatMiss(t *testing.T) {
+	met := rules.Finding{Verdict: rules.Met, Why: "It took 60 min."}
+	for _, c := range []struct {
+		of   rules.Verdict
+		s    *report.Share
+		want rules.Verdict
+	}{
+		{rules.Met, nil, rules.Met}, {rules.Met, &report.Share{Pieces: 20, Met: 20}, rules.Met}, {rules.Met, &report.Share{Pieces: 20, Met: 19}, rules.CannotTell},
+		{rules.NotMet, &report.Share{Pieces: 20, Met: 19}, rules.NotMet},
+	} {
+		f := met
+		f.Verdict = c.of
+		got, why := drawn(&f, c.s)
+		if got != c.want || got != c.of && why != "It took 60 min; but 1 of 20 pieces drawn from between the ends are not met, so it cannot be told." {
+			t.Errorf("%v beside %+v: %v, %q", c.of, c.s, got, why)
 		}
 	}
 }

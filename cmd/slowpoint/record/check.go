@@ -43,9 +43,13 @@ func (r *reader) gaps(t *taker, start float64) {
 	log := r.log
 	n := len(log.TimesS)
 	log.StepS = model.UsualStep(log.TimesS)
-	most := model.GapTimes * log.StepS
+	most := model.MostApartS(log.StepS)
 	if n < 2 {
 		return
+	}
+	sparse := log.StepS > most
+	if sparse {
+		r.tells.tell(farApart, cell.Warning, "", log.Lines[0], 0, "", spanOf(log.StepS), spanOf(most))
 	}
 	for i := 1; i < n; i++ {
 		d := log.TimesS[i] - log.TimesS[i-1]
@@ -57,6 +61,9 @@ func (r *reader) gaps(t *taker, start float64) {
 			return
 		}
 		log.Gaps = append(log.Gaps, i-1)
+		if sparse && d <= 3*log.StepS { // told as a whole
+			continue
+		}
 		s := gap
 		if t.form == dateStamp && !r.utc && math.Abs(d-3600) <= max(3*log.StepS, 60) && changeHour(instant(start+log.TimesS[i])) {
 			s = springGap

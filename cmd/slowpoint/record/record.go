@@ -44,7 +44,7 @@ type Log struct {
 	Lines        []int32   // line (text) or row (workbook) of each reading
 	StepS        float64   // the usual time between readings (median), s
 	ResolutionK  float64   // smallest step of the readings, K
-	Gaps         []int     // i: readings are lacking between i and i+1, which lie more than three times the usual time apart
+	Gaps         []int     // i: readings are lacking between i and i+1, which lie more than three times the usual time or more than an hour apart
 	Doubtful     []int     // readings that jump faster than their neighbours allow, or may be cut off
 	Missing      int       // rows without a reading
 	Rows         int       // rows of the table
