@@ -525,8 +525,20 @@ func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.
 		return
 	}
 	a := &report.Against{Place: rec.Place.Place, PlaceName: rec.Measured}
-	steps, before, air := asItWas(p.Steps, lengthsOf(p.Steps, out.History), way, media)
-	a.Air = air
+	steps, before := asItWas(p.Steps, lengthsOf(p.Steps, out.History), way)
+	for _, air := range media {
+		if air.step >= len(steps) {
+			continue
+		}
+		st := &steps[air.step]
+		if air.durationS <= st.DurationS-sameLengthS {
+			m.Problems.Add(cell.Error{At: rec.At, Level: cell.Note, Msg: fmt.Sprintf("Beside it %s is calculated for %s, and was recorded for %s by %s: the planned surroundings are taken there",
+				st.Name, report.Duration(st.DurationS), report.Duration(air.durationS), air.named()), Hint: "write in both rows when the step began and ended"})
+			continue
+		}
+		air.into(st, 0)
+		st.DurationS, a.Air = min(st.DurationS, air.durationS), true
+	}
 	h, err := model.Solve(p.Product, steps, model.Options{})
 	if err != nil {
 		m.Problems.Add(cell.Error{At: rec.At, Level: cell.Note, Msg: "The record was not compared with the prediction, which cannot be made for steps as long as they were: " + oneLine(err)})
@@ -560,9 +572,9 @@ func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.
 	m.Against = a
 }
 
-// asItWas are the steps of a chain up to the end of a record, as long as they were, those before the record as long as in lengths (s, before in all),
-// and in the surroundings that were recorded; air tells whether there are any.
-func asItWas(plan []model.Step, lengths []float64, way *ran, media []*medium) (steps []model.Step, before float64, air bool) {
+// asItWas are the steps of a chain up to the end of a record, as long as they were; those before the record are as long as in lengths, s, and before
+// in all.
+func asItWas(plan []model.Step, lengths []float64, way *ran) (steps []model.Step, before float64) {
 	steps = append([]model.Step(nil), plan[:way.first+len(way.startS)-1]...)
 	for i := range steps {
 		long := lengths[i]
@@ -573,14 +585,7 @@ func asItWas(plan []model.Step, lengths []float64, way *ran, media []*medium) (s
 		}
 		steps[i].DurationS, steps[i].UntilC = long, nil
 	}
-	for _, m := range media {
-		if m.step < len(steps) && m.durationS > steps[m.step].DurationS-1 {
-			m.into(&steps[m.step], 0)
-			steps[m.step].DurationS = min(steps[m.step].DurationS, m.durationS)
-			air = true
-		}
-	}
-	return steps, before, air
+	return steps, before
 }
 
 // differ fills in how far a record lies from the prediction beside it; c are its readings, and slow the prediction of the slowest place, nil where that

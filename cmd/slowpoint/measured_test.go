@@ -357,6 +357,37 @@ func TestRecordedAirHelps(t *testing.T) {
 	}
 }
 
+// TestAirTooShort: air that was recorded for less time than the probe says that the step lasted is not taken for the prediction beside it, and that is said.
+func TestAirTooShort(t *testing.T) {
+	for _, c := range []struct{ minutes, notes int }{{120, 0}, {150, 1}} {
+		r, p := slabRunner(model.Cool, 0.04, 60, 5, 25, 2*3600, coolTo(35, 90*60))
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		at, air := minutesOf(121, func(m int) float64 { return 9 + 0.01*float64(m%2) })
+		withAir(t, r, at, air, 0.1)
+		at, core := minutesOf(c.minutes, func(m int) float64 { return 60 - 0.3*float64(m) })
+		logFile(t, r.logs.folder, "core.csv", at, core)
+		probe := r.plan.Records[0]
+		probe.Name, probe.File, probe.Of, probe.Measured = "Core", "core.csv", workbook.AtSlowest, "slowest point"
+		r.plan.Records = append(r.plan.Records, probe)
+		r.logs = newLogs(r.plan, r.logs.folder, time.Time{})
+		_, media := r.deviate(p, out)
+		r.measure(p, out, media)
+		m := out.Measured[0]
+		n := 0
+		for _, e := range m.Problems {
+			if e.Level == cell.Note && strings.Contains(e.Msg, "Beside it bath is calculated for 2 h 30 min, and was recorded for 2 h by Air") {
+				n++
+			}
+		}
+		if n != c.notes || m.Against == nil || m.Against.Air != (c.notes == 0) {
+			t.Errorf("a probe of %d min: %v, %+v", c.minutes, m.Problems, m.Against.Air)
+		}
+	}
+}
+
 // TestElsewhere: what stands still may come to the temperature of a kitchen that the plan knows, else to all that it knows.
 func TestElsewhere(t *testing.T) {
 	step := func(s *model.Stage, c float64) model.Step {
