@@ -3,6 +3,7 @@ package main
 import (
 	"math"
 	"math/rand/v2"
+	"slices"
 
 	"slowpoint/report"
 	"slowpoint/rules"
@@ -31,8 +32,9 @@ func (s *search) share(n int, seed uint64, out []report.WorstCase) error {
 	met := make([]int, len(out))
 	counted := make([]int, len(out))
 	const batch = 64 // findings that are kept at a time
+	due := slices.Repeat([][]int{s.every()}, batch)
 	for from := 0; from < n; from += batch {
-		found, err := s.solve(at[from:min(n, from+batch)])
+		found, err := s.solve(at[from:min(n, from+batch)], due)
 		if err != nil {
 			return err
 		}

@@ -73,12 +73,40 @@ func (c corner) words(p *workbook.Product) []string {
 	return out
 }
 
-// search looks for the least favourable corner of each limit of a product. Every combination is solved once, for all limits.
+// search looks for the least favourable corner of each limit of a product. A limit is judged once at a corner, and only where it is asked for.
 type search struct {
 	r       *runner
 	p       *workbook.Product
 	options model.Options
-	solved  map[string][]rules.Finding // by corner: a finding for each limit that applies, in their order
+	limits  []*rules.Limit // those that apply, in the order of the plan
+	hints   [][]corner     // for each of them, corners that were worst beside this product; nil: nothing is known yet
+	solved  map[string]*cornerFindings
+}
+
+// cornerFindings are what was found at a corner: for each limit a finding, and whether it was judged.
+type cornerFindings struct {
+	findings []rules.Finding
+	judged   []bool
+}
+
+// ask is a corner at which a limit is to be judged, by its place among those that apply; everyLimit: all of them.
+type ask struct {
+	corner
+	limit int
+}
+
+const everyLimit = -1
+
+// searching starts the search for a product from the findings at its typed values.
+func (r *runner) searching(p *workbook.Product, typed []rules.Finding, o model.Options) *search {
+	s := &search{r: r, p: p, options: o, solved: map[string]*cornerFindings{}}
+	all := &cornerFindings{typed, make([]bool, len(typed))}
+	for k := range typed {
+		s.limits = append(s.limits, typed[k].Limit)
+		all.judged[k] = true
+	}
+	s.solved[make(corner, len(p.Spreads)).key()] = all
+	return s
 }
 
 // key is a corner as the index of the map.
@@ -90,7 +118,14 @@ func (c corner) key() string {
 	return string(b)
 }
 
-func (s *search) at(c corner) []rules.Finding { return s.solved[c.key()] }
+// at is what was found at a corner that was asked for.
+func (s *search) at(c corner) []rules.Finding { return s.solved[c.key()].findings }
+
+// knows tells whether a limit was judged at a corner.
+func (s *search) knows(c corner, k int) bool {
+	f := s.solved[c.key()]
+	return f != nil && f.judged[k]
+}
 
 // ends are the places, other than now, that a spread may stand at.
 func (s *search) ends(i int, now int8) []int8 {
@@ -107,32 +142,68 @@ func (s *search) ends(i int, now int8) []int8 {
 	return out
 }
 
-// need solves the corners of a list that were not solved yet, on all processors.
-func (s *search) need(list []corner) error {
-	var todo []corner
-	seen := map[string]bool{}
-	for _, c := range list {
-		if k := c.key(); s.solved[k] == nil && !seen[k] {
-			seen[k] = true
-			todo = append(todo, c)
+// forAll asks for every limit at each of some corners.
+func forAll(list []corner) []ask {
+	out := make([]ask, len(list))
+	for i, c := range list {
+		out[i] = ask{c, everyLimit}
+	}
+	return out
+}
+
+// need judges what is asked for and not known yet, on all processors.
+func (s *search) need(list []ask) error {
+	var order []corner
+	due := map[string][]int{}
+	for _, a := range list {
+		from, to := a.limit, a.limit+1
+		if a.limit == everyLimit {
+			from, to = 0, len(s.limits)
+		}
+		key := a.key()
+		for k := from; k < to; k++ {
+			if s.knows(a.corner, k) || slices.Contains(due[key], k) {
+				continue
+			}
+			if due[key] == nil {
+				order = append(order, a.corner)
+			}
+			due[key] = append(due[key], k)
 		}
 	}
-	at := make([][]float64, len(todo))
-	for i, c := range todo {
-		at[i] = c.places()
+	at, which := make([][]float64, len(order)), make([][]int, len(order))
+	for i, c := range order {
+		at[i], which[i] = c.places(), due[c.key()]
 	}
-	found, err := s.solve(at)
+	found, err := s.solve(at, which)
 	if err != nil {
 		return err
 	}
-	for i, c := range todo {
-		s.solved[c.key()] = append([]rules.Finding{}, found[i]...) // not nil where no limit applies
+	for i, c := range order {
+		f := s.solved[c.key()]
+		if f == nil {
+			f = &cornerFindings{make([]rules.Finding, len(s.limits)), make([]bool, len(s.limits))}
+			s.solved[c.key()] = f
+		}
+		for j, k := range which[i] {
+			f.findings[k], f.judged[k] = found[i][j], true
+		}
 	}
 	return nil
 }
 
-// solve judges the product at each of some places between the ends, on all processors. Of what fails the first in order is told.
-func (s *search) solve(places [][]float64) ([][]rules.Finding, error) {
+// every are the places of all limits.
+func (s *search) every() []int {
+	out := make([]int, len(s.limits))
+	for k := range out {
+		out[k] = k
+	}
+	return out
+}
+
+// solve judges the product at each of some places between the ends by the limits that are due there, on all processors. Of what fails the
+// first in order is told.
+func (s *search) solve(places [][]float64, due [][]int) ([][]rules.Finding, error) {
 	found, errs := make([][]rules.Finding, len(places)), make([]error, len(places))
 	var working sync.WaitGroup
 	slots := make(chan struct{}, runtime.GOMAXPROCS(0))
@@ -151,7 +222,7 @@ func (s *search) solve(places [][]float64) ([][]rules.Finding, error) {
 				errs[i] = s.refusal(at, err)
 				return
 			}
-			found[i] = run.find(s.r.plan.Limits)
+			found[i] = s.judge(run, due[i])
 		})
 	}
 	working.Wait()
@@ -161,6 +232,19 @@ func (s *search) solve(places [][]float64) ([][]rules.Finding, error) {
 		}
 	}
 	return found, nil
+}
+
+// judge judges a run by some of the limits.
+func (s *search) judge(run *prediction, due []int) []rules.Finding {
+	limits := make([]rules.Limit, len(due))
+	for j, k := range due {
+		limits[j] = *s.limits[k]
+	}
+	found := run.find(limits)
+	for j, k := range due {
+		found[j].Limit = s.limits[k]
+	}
+	return found
 }
 
 // refusal words why a corner cannot be calculated, at the row of the first spread that it moves.
@@ -195,25 +279,14 @@ func (s *search) corners() ([]corner, error) {
 			first = append(first, zero.with(i, v))
 		}
 	}
-	if n <= fullSpreads {
-		for k := 0; k < len(first); k++ { // grows while it is walked: each combination of ends
-			for i := range zero {
-				for _, v := range s.ends(i, 0) {
-					if c := first[k].with(i, v); !slices.ContainsFunc(first, func(o corner) bool { return slices.Equal(o, c) }) {
-						first = append(first, c)
-					}
-				}
-			}
-		}
+	if s.hints == nil {
+		first = s.combined(first)
 	}
-	first = append(first, s.physical()...)
-	if n > fullSpreads && n <= endSpreads {
-		first = append(first, s.everyEnd()...)
-	}
-	if err := s.need(first); err != nil {
+	if err := s.need(forAll(first)); err != nil {
 		return nil, err
 	}
-	worst := make([]corner, len(s.at(zero)))
+	worst := make([]corner, len(s.limits))
+	var list []ask
 	for k := range worst {
 		c := zero
 		for i := range zero {
@@ -226,13 +299,26 @@ func (s *search) corners() ([]corner, error) {
 			c = c.with(i, best[i])
 		}
 		worst[k] = c
+		if s.hints != nil {
+			list = append(list, ask{c, k})
+			for _, h := range s.hints[k] {
+				list = append(list, ask{h, k})
+			}
+		}
 	}
-	if err := s.need(worst); err != nil {
+	if s.hints == nil { // what is worst for one limit may be for another
+		list = forAll(worst)
+		first = append(first, worst...)
+	}
+	if err := s.need(list); err != nil {
 		return nil, err
 	}
-	first = append(first, worst...) // what is worst for one limit may be for another
 	for k := range worst {
-		for _, c := range first {
+		tried := first
+		if s.hints != nil {
+			tried = append(slices.Clone(first), s.hints[k]...)
+		}
+		for _, c := range tried {
 			if rules.Worse(&s.at(c)[k], &s.at(worst[k])[k]) {
 				worst[k] = c
 			}
@@ -244,12 +330,33 @@ func (s *search) corners() ([]corner, error) {
 	return worst, s.between(worst)
 }
 
+// combined adds the corners that no single end may lead to.
+func (s *search) combined(first []corner) []corner {
+	n := len(s.p.Spreads)
+	if n <= fullSpreads {
+		for k := 0; k < len(first); k++ { // grows while it is walked: each combination of ends
+			for i := range n {
+				for _, v := range s.ends(i, 0) {
+					if c := first[k].with(i, v); !slices.ContainsFunc(first, func(o corner) bool { return slices.Equal(o, c) }) {
+						first = append(first, c)
+					}
+				}
+			}
+		}
+	}
+	first = append(first, s.physical()...)
+	if n > fullSpreads && n <= endSpreads {
+		first = append(first, s.everyEnd()...)
+	}
+	return first
+}
+
 // between moves the corner of each limit that is met there to places between the ends where that makes it clearly worse, and on from there. A
 // clock that starts at a temperature makes the worst start lie just above it, and what is below never starts it.
 func (s *search) between(worst []corner) error {
 	zero := make(corner, len(s.p.Spreads))
 	next := make([][]corner, len(worst))
-	var list []corner
+	var list []ask
 	for k, c := range worst {
 		if s.at(c)[k].Verdict != rules.Met {
 			continue
@@ -257,9 +364,9 @@ func (s *search) between(worst []corner) error {
 		for i := range c {
 			for _, v := range s.inner(i, s.at(zero)) {
 				next[k] = append(next[k], c.with(i, v))
+				list = append(list, ask{c.with(i, v), k})
 			}
 		}
-		list = append(list, next[k]...)
 	}
 	if err := s.need(list); err != nil {
 		return err
@@ -381,7 +488,7 @@ func (s *search) everyEnd() []corner {
 func (s *search) climb(worst []corner) error {
 	moved, paired := make([]bool, len(worst)), make([]bool, len(worst))
 	for {
-		var list []corner
+		var list []ask
 		next := make([][]corner, len(worst))
 		for k, c := range worst {
 			next[k] = s.flips(c)
@@ -390,7 +497,9 @@ func (s *search) climb(worst []corner) error {
 					next[k] = append(next[k], s.flips(d)...)
 				}
 			}
-			list = append(list, next[k]...)
+			for _, d := range next[k] {
+				list = append(list, ask{d, k})
+			}
 		}
 		if err := s.need(list); err != nil {
 			return err
@@ -430,9 +539,7 @@ func (s *search) flips(c corner) []corner {
 // worst judges each limit of a product at its own least favourable corner. out is what the typed values give, with its findings before
 // groups join them; what the corners give takes their place.
 func (r *runner) worst(p *workbook.Product, out *report.Product, typed []rules.Finding, o model.Options) error {
-	s := &search{r: r, p: p, options: o, solved: map[string][]rules.Finding{}}
-	zero := make(corner, len(p.Spreads))
-	s.solved[zero.key()] = append([]rules.Finding{}, typed...)
+	s := r.searching(p, typed, o)
 	if r.corners != nil {
 		return s.known(out, typed)
 	}
@@ -502,11 +609,7 @@ func (s *search) telling(k int, c corner) corner {
 	at := &s.at(c)[k]
 	out := c
 	for i := range c {
-		fs := s.at(c.with(i, 0))
-		if fs == nil {
-			continue
-		}
-		if !apart(&fs[k], at) {
+		if d := c.with(i, 0); s.knows(d, k) && !apart(&s.at(d)[k], at) {
 			out = out.with(i, 0)
 		}
 	}
@@ -524,7 +627,7 @@ func (s *search) known(out *report.Product, typed []rules.Finding) error {
 		if c == nil {
 			continue
 		}
-		if err := s.need([]corner{c}); err != nil {
+		if err := s.need([]ask{{c, k}}); err != nil {
 			return err
 		}
 		if f := &s.at(c)[k]; rules.Worse(f, &findings[k]) {

@@ -97,6 +97,16 @@ func TestCornerAgainstAFineGridOfTheExactSeries(t *testing.T) {
 	}
 }
 
+// searchOf is a search that knows the findings at the typed values.
+func searchOf(t *testing.T, r *runner, p *workbook.Product) *search {
+	t.Helper()
+	run, err := r.predict(p, model.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	return r.searching(p, run.find(r.plan.Limits), model.Options{})
+}
+
 // Each limit's corner is the worst of all combinations of ends, of which there are 3⁶, and the two limits differ in theirs: a warmer
 // start helps the heating and hurts the chilling.
 func TestCornerIsTheWorstOfAllCombinations(t *testing.T) {
@@ -110,7 +120,7 @@ func TestCornerIsTheWorstOfAllCombinations(t *testing.T) {
 	if fmt.Sprint(d.Worst[0].At) == fmt.Sprint(d.Worst[1].At) {
 		t.Errorf("both limits at %v", d.Worst[0].At)
 	}
-	s := &search{r: r, p: p, solved: map[string][]rules.Finding{}}
+	s := searchOf(t, r, p)
 	var all []corner
 	for n := range 729 {
 		c := corner{}
@@ -119,7 +129,7 @@ func TestCornerIsTheWorstOfAllCombinations(t *testing.T) {
 		}
 		all = append(all, c)
 	}
-	if err := s.need(all); err != nil {
+	if err := s.need(forAll(all)); err != nil {
 		t.Fatal(err)
 	}
 	for k := range d.Worst {
@@ -192,7 +202,7 @@ func TestWorstValueBetweenTheEnds(t *testing.T) {
 	r.plan.Limits = []rules.Limit{{Name: "Cold", Kind: rules.CoolWithin, Stages: []*model.Stage{model.Cool}, Applies: rules.Applies{All: true},
 		FromC: &from, ToC: &to, TimeS: &within, Clock: rules.Clock{Crossing: true}}}
 	p.Spreads = []workbook.Spread{vary("start temperature", -1, 8, 8, false)}
-	s := &search{r: r, p: p, solved: map[string][]rules.Finding{}}
+	s := searchOf(t, r, p)
 	worst, err := s.corners()
 	if err != nil {
 		t.Fatal(err)
@@ -213,7 +223,7 @@ func TestWorstValueBetweenTheEnds(t *testing.T) {
 	for k := -32; k <= 32; k++ {
 		grid = append(grid, []float64{float64(k) / 32})
 	}
-	found, err := s.solve(grid)
+	found, err := s.solve(grid, slices.Repeat([][]int{s.every()}, len(grid)))
 	if err != nil {
 		t.Fatal(err)
 	}
