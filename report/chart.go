@@ -1095,12 +1095,15 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 		if p.Product.Shape == model.Spheroid {
 			m, on = pt.UpM-pt.AcrossM, pt.UpM >= 0 && pt.AcrossM >= 0 && (pt.UpM == 0 || pt.AcrossM == 0)
 		}
-		if pt.Name != "centre" && on {
+		if pt.Name != "centre" && on && len(f.spots) < mostSpots {
 			f.spots = append(f.spots, spot{pt.Name, in.Out(m), h.shown(hist.At(pt.Place, times[len(times)-1]))})
 		}
 	}
 	return f, times
 }
+
+// mostSpots is how many points a profile names at most: more have no room.
+const mostSpots = 20
 
 // passage is the way that the profile of a product is drawn along; nil if there is no profile.
 func (p *Product) passage(d *deciding) *passage {

@@ -152,7 +152,7 @@ func (r *runner) sizes(ctx context.Context, o *sizeOptions) (found []*report.Siz
 			if len(p.Spreads) > 0 {
 				basis = spreadBasis
 			}
-			out[i] = r.size(p, d, r.findings, basis, within)
+			out[i] = r.size(p, d, r.judges(p), basis, within)
 		})
 	}
 	working.Wait()

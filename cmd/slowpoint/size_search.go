@@ -1,13 +1,13 @@
 package main
 
 import (
-	"errors"
+	"maps"
 	"math"
 	"slices"
 	"sync"
 
 	"slowpoint/cmd/slowpoint/workbook"
-	"slowpoint/model/cell"
+	"slowpoint/model"
 	"slowpoint/report"
 	"slowpoint/rules"
 )
@@ -22,19 +22,44 @@ const (
 // judgement gives the findings on a product with its steps; a search knows nothing else of how they come about.
 type judgement func(p *workbook.Product) ([]rules.Finding, error)
 
-// findings judges at the values of the plan, or at the unfavourable ends of those that vary.
-func (r *runner) findings(p *workbook.Product) ([]rules.Finding, error) {
-	d, err := r.judged(p)
-	if es := (cell.Errors)(nil); errors.As(err, &es) {
-		for i, e := range es {
-			es[i] = p.AsTyped(r.plan.Locate(e))
+// judges are the two ways to judge a value in a search: look may miss what is worse than it found, confirm may not; nil if look does not.
+type judges struct{ look, confirm judgement }
+
+// sure is the way that misses nothing.
+func (j judges) sure() judgement {
+	if j.confirm != nil {
+		return j.confirm
+	}
+	return j.look
+}
+
+// judges are those of a product: at the values of the plan, or at the unfavourable ends of those that vary.
+func (r *runner) judges(p *workbook.Product) judges {
+	if len(p.Spreads) > 0 {
+		g := &guide{r: r}
+		return judges{g.look, g.confirm}
+	}
+	return judges{look: func(p *workbook.Product) ([]rules.Finding, error) {
+		run, err := r.predict(p, model.Options{})
+		if err != nil {
+			return nil, r.located(p, err)
 		}
-		return nil, errors.New(firstFault(es))
+		return rules.Conclude(run.find(r.plan.Limits), r.plan.Groups).Findings, nil
+	}}
+}
+
+// without is the same ways without some limits.
+func (j judges) without(fixed []*rules.Limit) judges {
+	less := func(judge judgement) judgement {
+		if judge == nil {
+			return nil
+		}
+		return func(p *workbook.Product) ([]rules.Finding, error) {
+			fs, err := judge(p)
+			return slices.DeleteFunc(fs, func(f rules.Finding) bool { return slices.Contains(fixed, f.Limit) }), err
+		}
 	}
-	if err != nil {
-		return nil, err
-	}
-	return d.Judgement.Findings, nil
+	return judges{less(j.look), less(j.confirm)}
 }
 
 // meetsEvery tells whether a must limit applies and all that do are met.
@@ -53,28 +78,34 @@ func meetsEvery(fs []rules.Finding) bool {
 
 // examined is what was found at a step of a dial.
 type examined struct {
-	findings []rules.Finding
-	err      error // it cannot be calculated there
-	meets    bool
+	findings  []rules.Finding
+	err       error // it cannot be calculated there
+	meets     bool
+	confirmed bool // not only looked at
 }
 
 // scan is a search along a dial.
 type scan struct {
 	p       *workbook.Product
 	d       *dial
-	judge   judgement
+	judges  judges
 	workers int // how many values are judged at once
 	seen    map[int]*examined
 	spacing int // of the grid, in steps
 }
 
-// try judges one value, given as it is computed in.
-func (s *scan) try(value float64) *examined {
+// try judges the product with one value, given as it is computed in.
+func (s *scan) try(value float64, judge judgement) *examined {
 	q := *s.p
 	q.Steps = slices.Clone(s.p.Steps)
 	s.d.set(&q, value)
+	return examine(&q, judge)
+}
+
+// examine judges a product.
+func examine(p *workbook.Product, judge judgement) *examined {
 	e := &examined{}
-	if e.findings, e.err = s.judge(&q); e.err == nil {
+	if e.findings, e.err = judge(p); e.err == nil {
 		e.meets = meetsEvery(e.findings)
 	}
 	return e
@@ -85,7 +116,7 @@ func (s *scan) at(k int) *examined {
 	if e := s.seen[k]; e != nil {
 		return e
 	}
-	e := s.try(s.d.value(k))
+	e := s.try(s.d.value(k), s.judges.look)
 	s.seen[k] = e
 	return e
 }
@@ -101,7 +132,7 @@ func (s *scan) all(ks []int) {
 		}
 		slots <- struct{}{}
 		working.Go(func() {
-			out[i] = s.try(s.d.value(k))
+			out[i] = s.try(s.d.value(k), s.judges.look)
 			<-slots
 		})
 	}
@@ -113,10 +144,47 @@ func (s *scan) all(ks []int) {
 	}
 }
 
-// run scans the range on a grid, looks closer where a margin turns round near its limit, and narrows every change of the verdict down to two
-// neighbouring steps: a margin need not go one way.
+// mostRounds is how often a search looks again with what it learned where it confirmed; after that it confirms everywhere.
+const mostRounds = 8
+
+// run looks along the range until what it found is confirmed.
 func (s *scan) run() {
-	s.seen = map[int]*examined{}
+	for range mostRounds {
+		if s.look(); s.confirm() {
+			return
+		}
+	}
+	s.judges = judges{look: s.judges.sure()}
+	s.look()
+}
+
+// confirm confirms the ends of each run of values that meet: what misses a limit where it was looked at misses it. It tells whether all of
+// them still meet.
+func (s *scan) confirm() bool {
+	if s.judges.confirm == nil {
+		return true
+	}
+	ks := s.steps()
+	sure := map[int]*examined{}
+	holds := true
+	for i, k := range ks {
+		now := s.seen[k]
+		within := i > 0 && s.seen[ks[i-1]].meets && i+1 < len(ks) && s.seen[ks[i+1]].meets
+		if now.confirmed || !now.meets || within {
+			continue
+		}
+		sure[k] = s.try(s.d.value(k), s.judges.confirm)
+		sure[k].confirmed = true
+		holds = holds && sure[k].meets
+	}
+	maps.Copy(s.seen, sure)
+	return holds
+}
+
+// look scans the range on a grid, looks closer where a margin turns round near its limit, and narrows every change of the verdict down to two
+// neighbouring steps: a margin need not go one way. What was confirmed before stays.
+func (s *scan) look() {
+	s.forget()
 	s.spacing = max(1, (s.d.hi-s.d.lo+sizeGrid-1)/sizeGrid)
 	var grid []int
 	for k := s.d.lo; k < s.d.hi; k += s.spacing {
@@ -141,6 +209,14 @@ func (s *scan) run() {
 		}
 		bisect(a, b, func(k int) bool { return s.at(k).meets })
 	}
+}
+
+// forget leaves only what was confirmed.
+func (s *scan) forget() {
+	if s.seen == nil {
+		s.seen = map[int]*examined{}
+	}
+	maps.DeleteFunc(s.seen, func(_ int, e *examined) bool { return !e.confirmed })
 }
 
 // steps are those that were judged, rising.
@@ -219,16 +295,14 @@ func (s *scan) fixed() []*rules.Limit {
 
 // size searches along a dial and makes what the documents show. Where limits that nothing on the dial changes are missed, it looks for what
 // meets the others.
-func (r *runner) size(p *workbook.Product, d *dial, judge judgement, basis string, workers int) *report.Sizing {
-	s := &scan{p: p, d: d, judge: judge, workers: workers}
+func (r *runner) size(p *workbook.Product, d *dial, j judges, basis string, workers int) *report.Sizing {
+	now := examine(p, j.sure()) // first: what is found here guides the search
+	s := &scan{p: p, d: d, judges: j, workers: workers}
 	s.run()
 	fixed := s.fixed()
 	if len(fixed) > 0 {
 		all := s
-		s = &scan{p: p, d: d, workers: workers, judge: func(q *workbook.Product) ([]rules.Finding, error) {
-			fs, err := judge(q)
-			return slices.DeleteFunc(fs, func(f rules.Finding) bool { return slices.Contains(fixed, f.Limit) }), err
-		}}
+		s = &scan{p: p, d: d, workers: workers, judges: j.without(fixed)}
 		if s.run(); len(s.fixed()) > 0 || !slices.ContainsFunc(s.steps(), func(k int) bool { return s.seen[k].meets }) {
 			s, fixed = all, nil
 		}
@@ -245,10 +319,6 @@ func (r *runner) size(p *workbook.Product, d *dial, judge judgement, basis strin
 			pt.Refused = e.err.Error()
 		}
 		return pt
-	}
-	now := &examined{}
-	if now.findings, now.err = judge(p); now.err == nil {
-		now.meets = meetsEvery(now.findings)
 	}
 	out.Now = point(d.now, now)
 	ks := s.steps()

@@ -89,7 +89,7 @@ func (r *runner) search1(t *testing.T, o sizeOptions) *report.Sizing {
 	if err != nil {
 		t.Fatal(err)
 	}
-	return r.size(p, d, r.findings, nominalBasis, 1)
+	return r.size(p, d, r.judges(p), nominalBasis, 1)
 }
 
 // What is found is the exact value rounded to the safe side by the resolution: where the series, turned round, has the limit met just so.
@@ -193,7 +193,7 @@ func TestSizeOfSeveralRuns(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			s := r.size(p, d, judged(c.margin), "", 2)
+			s := r.size(p, d, judges{look: judged(c.margin)}, "", 2)
 			var got [][2]float64
 			for _, m := range s.Meets {
 				got = append(got, [2]float64{math.Round(m[0].Value), math.Round(m[1].Value)})
@@ -320,7 +320,7 @@ func BenchmarkSize(b *testing.B) {
 		b.Fatal(err)
 	}
 	for b.Loop() {
-		if s := r.size(p, d, r.findings, nominalBasis, 1); s.Answer == nil || s.Next == nil {
+		if s := r.size(p, d, r.judges(p), nominalBasis, 1); s.Answer == nil || s.Next == nil {
 			b.Fatal("no answer")
 		}
 	}

@@ -268,66 +268,84 @@ func (s *search) refusal(at []float64, err error) error {
 		Hint: "let them vary less, or change what it is about"}}
 }
 
-// corners finds the least favourable corner of each limit: directions by the effect of each end alone, then whatever makes it worse.
-// A quantity whose both ends are better than its typed value stays there.
+// corners finds the least favourable corner of each limit: directions by the effect of each end alone, or from corners that were worst beside
+// this product, then whatever makes it worse. A quantity whose both ends are better than its typed value stays there.
 func (s *search) corners() ([]corner, error) {
-	n := len(s.p.Spreads)
-	zero := make(corner, n)
+	begin := s.fromEnds
+	if s.hints != nil {
+		begin = s.fromHints
+	}
+	worst, err := begin()
+	if err != nil {
+		return nil, err
+	}
+	if err := s.climb(worst); err != nil {
+		return nil, err
+	}
+	return worst, s.between(worst)
+}
+
+// fromHints gives the worst of the corners that were worst beside this product, and of the typed values.
+func (s *search) fromHints() ([]corner, error) {
+	worst := make([]corner, len(s.limits))
+	var list []ask
+	for k := range worst {
+		for _, c := range s.hints[k] {
+			list = append(list, ask{c, k})
+		}
+	}
+	if err := s.need(list); err != nil {
+		return nil, err
+	}
+	for k := range worst {
+		worst[k] = s.worstOf(k, make(corner, len(s.p.Spreads)), s.hints[k])
+	}
+	return worst, nil
+}
+
+// worstOf is the worst of some corners for a limit, the first given if none is worse.
+func (s *search) worstOf(k int, worst corner, list []corner) corner {
+	for _, c := range list {
+		if rules.Worse(&s.at(c)[k], &s.at(worst)[k]) {
+			worst = c
+		}
+	}
+	return worst
+}
+
+// fromEnds finds where each end alone leads, and the worst of all corners that are worth it.
+func (s *search) fromEnds() ([]corner, error) {
+	zero := make(corner, len(s.p.Spreads))
 	first := []corner{zero}
 	for i := range zero {
 		for _, v := range s.ends(i, 0) {
 			first = append(first, zero.with(i, v))
 		}
 	}
-	if s.hints == nil {
-		first = s.combined(first)
-	}
+	first = s.combined(first)
 	if err := s.need(forAll(first)); err != nil {
 		return nil, err
 	}
 	worst := make([]corner, len(s.limits))
-	var list []ask
 	for k := range worst {
 		c := zero
 		for i := range zero {
-			best := zero
+			alone := zero
 			for _, v := range s.ends(i, 0) {
-				if d := zero.with(i, v); rules.Worse(&s.at(d)[k], &s.at(best)[k]) {
-					best = d
-				}
+				alone = s.worstOf(k, alone, []corner{zero.with(i, v)})
 			}
-			c = c.with(i, best[i])
+			c = c.with(i, alone[i])
 		}
 		worst[k] = c
-		if s.hints != nil {
-			list = append(list, ask{c, k})
-			for _, h := range s.hints[k] {
-				list = append(list, ask{h, k})
-			}
-		}
 	}
-	if s.hints == nil { // what is worst for one limit may be for another
-		list = forAll(worst)
-		first = append(first, worst...)
-	}
-	if err := s.need(list); err != nil {
+	if err := s.need(forAll(worst)); err != nil {
 		return nil, err
 	}
+	first = append(first, worst...) // what is worst for one limit may be for another
 	for k := range worst {
-		tried := first
-		if s.hints != nil {
-			tried = append(slices.Clone(first), s.hints[k]...)
-		}
-		for _, c := range tried {
-			if rules.Worse(&s.at(c)[k], &s.at(worst[k])[k]) {
-				worst[k] = c
-			}
-		}
+		worst[k] = s.worstOf(k, worst[k], first)
 	}
-	if err := s.climb(worst); err != nil {
-		return nil, err
-	}
-	return worst, s.between(worst)
+	return worst, nil
 }
 
 // combined adds the corners that no single end may lead to.
@@ -404,13 +422,40 @@ func (s *search) inner(i int, typed []rules.Finding) []int8 {
 		}
 		here := slices.Clone(within)
 		for k := range typed {
-			if from := typed[k].Limit.FromC; from != nil && sp.Of.Name == "start temperature" {
-				n := int(math.Floor((*from - s.p.StartC) * float64(side.sign) / side.by * parts))
-				here = append(here, n-1, n, n+1, n+2)
-			}
+			here = append(here, s.starting(i, side.sign, side.by, typed[k].Limit)...)
 		}
 		slices.Sort(here)
 		for _, n := range slices.Compact(here) {
+			if n > 0 && n < parts {
+				out = append(out, int8(side.sign*(1+n)))
+			}
+		}
+	}
+	return out
+}
+
+// starting are the parts of the way to an end, which lies so far off, at which a start is just to either side of where the clock of a limit
+// starts; none if the spread is not of the start or the limit has no such place.
+func (s *search) starting(i, sign int, by float64, l *rules.Limit) []int {
+	if l.FromC == nil || s.p.Spreads[i].Of.Name != "start temperature" {
+		return nil
+	}
+	n := int(math.Floor((*l.FromC - s.p.StartC) * float64(sign) / by * parts))
+	return []int{n - 1, n, n + 1, n + 2}
+}
+
+// beside are the places of a spread, between its ends, that starting gives.
+func (s *search) beside(i int, l *rules.Limit) []int8 {
+	var out []int8
+	minus, plus := s.p.Span(i)
+	for _, side := range []struct {
+		sign int
+		by   float64
+	}{{-1, minus}, {1, plus}} {
+		if !(side.by > 0) {
+			continue
+		}
+		for _, n := range s.starting(i, side.sign, side.by, l) {
 			if n > 0 && n < parts {
 				out = append(out, int8(side.sign*(1+n)))
 			}
