@@ -86,7 +86,7 @@ func (x *sheet) factors() [][]string {
 	if p.Product.Shape != nil {
 		shape = p.Product.Shape.Name
 	}
-	add(say("factor shape"), joined(shape, x.sizes()), x.from(append([]string{"Shape"}, model.SizeColumns...)...))
+	add(say("factor shape"), joined(shape, sizes(&x.p.Product)), x.from(append([]string{"Shape"}, model.SizeColumns...)...))
 	add(say("factor start"), h.stated(p.Product.StartC), x.from("Start temperature"))
 	for _, m := range p.Product.Foods() {
 		add(say("factor food"), joined(m.Name, m.Composition), m.Source)

@@ -247,7 +247,7 @@ func (x *sheet) slowestSentence() string {
 	if hist.Recorded {
 		key = "chart sentence record"
 	}
-	args := []any{x.decides.placeName, strings.Join(s, "; ")}
+	args := []any{x.decides.placeName + x.ofPiece(hist, x.decides.placeName), strings.Join(s, "; ")}
 	if key == "chart sentence" || key == "chart sentence "+rules.LowConductivity || key == "chart sentence worst" {
 		args = append([]any{x.decides.called()}, args...)
 	}
@@ -294,6 +294,9 @@ func (x *sheet) checks() []string {
 		place := f.PlaceName
 		if place == "" {
 			place = x.decides.placeName
+		}
+		if h := x.p.runOf(f); h != nil {
+			place += x.ofPiece(h, place)
 		}
 		if f.EdgeOf != "" && x.short < 2 {
 			place = say("check edge", place, f.EdgeOf)
@@ -832,12 +835,13 @@ func (x *sheet) predicted() {
 		d.text(x.profileSentence(times))
 	}
 	d.heading(say("sketch title", x.decides.called()), 1, 48)
-	d.sketch(&x.p.Product, x.decides.place, say("sketch place", x.decides.called(), x.decides.placeName), 38)
+	piece := x.p.productOf(x.decides.history)
+	d.sketch(piece, x.decides.place, say("sketch place", x.decides.called(), x.decides.placeName), 38)
 	if x.p.Product.Shape == model.Stirred {
-		d.text(say("sketch sentence stirred", x.sizes()))
+		d.text(say("sketch sentence stirred", sizes(piece)))
 		return
 	}
-	d.text(say("sketch sentence", x.p.Product.Shape.Name, x.sizes(), x.decides.called(), x.decides.placeName))
+	d.text(say("sketch sentence", x.p.Product.Shape.Name, sizes(piece), x.decides.called(), x.decides.placeName))
 }
 
 // levelsSentence names the limit lines of the chart in both units.
@@ -1031,35 +1035,43 @@ func (x *sheet) profileSentence(times []float64) string {
 	return out
 }
 
-// sizes says the sizes of the product that its shape uses.
-func (x *sheet) sizes() string {
-	z, p := x.p.Product.Size, x.p.Product.Shape
-	if p == nil {
+// sizes says the sizes of a product that its shape uses.
+func sizes(p *model.Product) string {
+	if p.Shape == nil {
 		return ""
 	}
 	var s []string
-	for _, need := range p.Needs {
-		switch v := *z.Of(need); need {
+	for _, need := range p.Shape.Needs {
+		switch v := *p.Size.Of(need); need {
 		case "Volume":
 			s = append(s, say("size volume", plain(v*1000, 3, nearest)))
 		case "Surface area":
 			s = append(s, say("size area", plain(v, 4, nearest)))
 		default:
-			s = append(s, say("size "+strings.ToLower(need))+" "+length(&x.p.Product, v))
+			s = append(s, say("size "+strings.ToLower(need))+" "+length(p, v))
 		}
 	}
-	if p == model.LayeredSlab {
+	if p.Shape == model.LayeredSlab {
 		var layers []string
-		for i, y := range x.p.Product.Layers {
+		for i, y := range p.Layers {
 			if y.BelowM2KW > 0 {
-				layers = append(layers, say("size gap", i+1, y.Food.Name, length(&x.p.Product, y.ThicknessM), plain(y.BelowM2KW, 5, nearest)))
+				layers = append(layers, say("size gap", i+1, y.Food.Name, length(p, y.ThicknessM), plain(y.BelowM2KW, 5, nearest)))
 			} else {
-				layers = append(layers, say("size layer", i+1, y.Food.Name, length(&x.p.Product, y.ThicknessM)))
+				layers = append(layers, say("size layer", i+1, y.Food.Name, length(p, y.ThicknessM)))
 			}
 		}
-		s = append(s, say("size thickness")+" "+length(&x.p.Product, z.ThicknessM), say("size layers", len(layers), strings.Join(layers, ", ")))
+		s = append(s, say("size thickness")+" "+length(p, p.Size.ThicknessM), say("size layers", len(layers), strings.Join(layers, ", ")))
 	}
 	return strings.Join(s, ", ")
+}
+
+// ofPiece says that a run is of another piece than the one listed, by its sizes; "" where it is not, or where the place is the same in both.
+func (x *sheet) ofPiece(h *model.History, place string) string {
+	piece := x.p.productOf(h)
+	if piece.Size == x.p.Product.Size || place == "centre" {
+		return ""
+	}
+	return say("of piece", sizes(piece))
 }
 
 // measured keeps what was measured apart from what was calculated.

@@ -190,6 +190,7 @@ var words = map[string]string{
 	"at the end of":         "%d %s (%s): %s",
 	"checks title":          "Check with the probe",
 	"check":                 "%s; probe: %s. Asked for: %s.",
+	"of piece":              " in a piece of %s",
 	"check edge":            "%s (beyond this place nothing was ever above %s, so no clock ran there)",
 	"check at":              "At about %s from the start (%s)",
 	"check expects":         "; the model expects %s",
