@@ -66,10 +66,12 @@ func (r *runner) dialOf(p *workbook.Product, o *sizeOptions) (*dial, error) {
 		d, err = r.durationDial(p, rest)
 	case word == "medium" && strings.HasPrefix(strings.ToLower(rest), "temperature "):
 		d, err = r.mediumDial(p, strings.TrimSpace(rest[len("temperature "):]))
+	case word == "until" && rest != "":
+		d, err = r.untilDial(p, rest)
 	case word == "start" && strings.EqualFold(rest, "temperature"):
 		d = r.startDial(p)
 	default:
-		err = fmt.Errorf("--vary %q: expected thickness, width, length, diameter, duration STEP, medium temperature STEP or start temperature", o.vary)
+		err = fmt.Errorf("--vary %q: expected thickness, width, length, diameter, duration STEP, until STEP, medium temperature STEP or start temperature", o.vary)
 	}
 	if err != nil {
 		return nil, err
@@ -98,7 +100,7 @@ func (r *runner) durationDial(p *workbook.Product, name string) (*dial, error) {
 	}
 	s := &p.Steps[i]
 	if s.UntilC != nil {
-		return nil, fmt.Errorf("--vary: %s ends at a temperature, so that its duration is only the longest that it may last: clear its Until in the plan to vary it", s.Name)
+		return nil, fmt.Errorf("--vary: %s ends at a temperature, so that its duration is only the longest that it may last: vary that temperature with --vary \"until %s\", or clear its Until in the plan", s.Name, s.Name)
 	}
 	d := &dial{what: "duration of " + s.Name, quantity: &unit.Duration, step: 60, now: s.DurationS,
 		set: func(q *workbook.Product, v float64) { lasting(q, i, v) }}
@@ -124,6 +126,23 @@ func (r *runner) mediumDial(p *workbook.Product, name string) (*dial, error) {
 		low = max(low, leverColdestC)
 	}
 	d.between(low, d.now+sizeMediaK)
+	return d, nil
+}
+
+// untilDial varies the temperature at which a step ends: the coldest that meets is asked for in heating, the warmest elsewhere.
+func (r *runner) untilDial(p *workbook.Product, name string) (*dial, error) {
+	i, err := stepOf(p, name)
+	if err != nil {
+		return nil, err
+	}
+	s := &p.Steps[i]
+	if s.UntilC == nil {
+		return nil, fmt.Errorf("--vary: %s ends after its duration and not at a temperature: vary its duration, or give it an Until in the plan", s.Name)
+	}
+	d := r.degreesDial("end temperature of "+s.Name, *s.UntilC)
+	d.most = s.Stage == nil || !s.Stage.Heats
+	d.set = func(q *workbook.Product, v float64) { q.Steps[i].UntilC = &v }
+	d.between(d.now-sizeMediaK, d.now+sizeMediaK)
 	return d, nil
 }
 

@@ -27,12 +27,12 @@ func sizeCommand(files *shelf) *cobra.Command {
 	cmd := &cobra.Command{
 		Use: "size PLAN", Short: "Find the largest size, the shortest step, the medium or the start temperature that meets every limit",
 		Long: `Size varies one number of a product, leaves everything else as the plan has it, and finds the values that meet every limit of level
-must: the largest size, the shortest duration, the coldest medium of a step that heats and the warmest of one that does not, the warmest
-start. The value told meets the limits and its neighbour, a whole step of --step farther, does not. Margins need not go one way: all
+must: the largest size, the shortest duration, the coldest medium or end of a step that heats and the warmest of one that does not, the
+warmest start. The value told meets the limits and its neighbour, a whole step of --step farther, does not. Margins need not go one way: all
 runs of values that meet are told.
 
-WHAT is thickness, width, length, diameter, "duration STEP", "medium temperature STEP" or "start temperature"; STEP may be PROCESS/STEP.
-Left out, it is the size that decides how fast heat gets in.
+WHAT is thickness, width, length, diameter, "duration STEP", "until STEP" (the temperature at which it ends), "medium temperature
+STEP" or "start temperature"; STEP may be PROCESS/STEP. Left out, it is the size that decides how fast heat gets in.
 
 Exit codes: 0 a value was found for every product; 1 for some product no value meets every limit; 2 the input, or part of it, could not
 be used; 3 the results could not be written, or a fault of the program.`,

@@ -249,6 +249,34 @@ func TestSizeSays(t *testing.T) {
 	}
 }
 
+// The temperature at which a cook may end at the lowest is that of the first whole degree which meets all limits, tried one by one.
+func TestSizeOfAnEndTemperature(t *testing.T) {
+	meets := func(c float64) bool {
+		r, p := slabRunner(model.Cook, 0.043, 6, 95, 60, 4*3600, heatTo(72))
+		p.Steps[0].UntilC = &c
+		d, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return d.Judgement.Verdict == rules.Met
+	}
+	want := 60.0
+	for !meets(want) {
+		want++
+	}
+	r, p := slabRunner(model.Cook, 0.043, 6, 95, 60, 4*3600, heatTo(72))
+	p.Steps[0].UntilC = new(float64)
+	*p.Steps[0].UntilC = 80
+	s := r.search1(t, sizeOptions{vary: "until bath"})
+	if s.Answer == nil || s.Next == nil || s.Answer.Value != want || s.Next.Value != want-1 || s.Most || s.What != "end temperature of bath" {
+		t.Errorf("%+v, then %+v; want %g", s.Answer, s.Next, want)
+	}
+	p.Steps[0].UntilC = nil
+	if _, err := r.dialOf(p, &sizeOptions{vary: "until bath"}); err == nil || !strings.Contains(err.Error(), "ends after its duration") {
+		t.Error(err)
+	}
+}
+
 // The command on the demo: words, exit codes, files; what it cannot vary is refused in one sentence.
 func TestSizeCommand(t *testing.T) {
 	dir := t.TempDir()
