@@ -13,8 +13,9 @@ var Band = &Kind{Name: "band", Unit: "min", Needs: [][]string{{"From"}, {"To"}, 
 func judgeBand(v *view) Finding {
 	l := v.l
 	q := question{unit: "min", need: *l.TimeS / 60}
+	q.region = func(t tilt) region { return between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK) }
 	q.measure = func(p path, t tilt) outcome {
-		r := between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK)
+		r := q.region(t)
 		if t.bound {
 			p = v.cappedFrom(p, (r.lo+r.hi)/2)
 		}

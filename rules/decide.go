@@ -2,6 +2,7 @@ package rules
 
 import (
 	"math"
+	"slices"
 
 	"slowpoint/model"
 	"slowpoint/model/cell"
@@ -60,6 +61,8 @@ type question struct {
 	needs   bool    // a time that is needed, not one that is allowed
 	rises   bool    // a clock that starts at a crossing does so on the way up
 	adds    bool    // what was reached before a bound begins counts all the same
+
+	region func(t tilt) region // of a time that is allowed at most, where it counts; nil: another question
 }
 
 // rank orders verdicts from harmless to worst.
@@ -239,14 +242,14 @@ func (v *view) candidates(s scope, q question) []candidate {
 		picks = append(picks, v.pick(s.spots, q, tilt{errK: -v.errK})...)
 	}
 	var cs []candidate
-	add := func(p model.Place, surface bool) {
-		for _, c := range cs {
-			if near(c.place, p) {
-				return
-			}
-		}
+	put := func(p model.Place, surface bool) {
 		path := v.path(p)
 		cs = append(cs, candidate{place: p, surface: surface, path: path, nominal: q.measure(path, tilt{})})
+	}
+	add := func(p model.Place, surface bool) {
+		if !slices.ContainsFunc(cs, func(c candidate) bool { return near(c.place, p) }) {
+			put(p, surface)
+		}
 	}
 	for n, i := range picks {
 		add(v.c.spots[i].Place, v.c.spots[i].Surface)
@@ -276,6 +279,9 @@ func (v *view) candidates(s scope, q question) []candidate {
 		if add(e.at.place(), s.surfaceOnly); len(cs) > n {
 			cs[n].edge = &e
 		}
+	}
+	for _, x := range v.jointsAround(s, q, cs) { // a hair's breadth beside another place it may be another verdict
+		put(x.place(), s.surfaceOnly)
 	}
 	return cs
 }
@@ -395,7 +401,7 @@ func (v *view) room(s scope, q question, cs []candidate) (float64, *model.Place)
 	if !any {
 		return math.NaN(), nil
 	}
-	return least, where
+	return v.jointRoom(s, q, cs, least, where)
 }
 
 // maybe tells by its rough course whether a spot may have a margin below least.

@@ -70,6 +70,7 @@ type edge struct {
 	w       window
 	lo, hi  int     // between which instants of the scan the two have their peaks, and some more
 	first   outcome // of the scanned courses, blended so that the peak just counts
+	joint   *joint  // an edge between places of unlike numbers of periods, not one of those that count
 }
 
 // coordinates are Up, Across and Along of a place, m.
@@ -179,6 +180,11 @@ func (v *view) paired(pk peaks, within []bool, w window, level float64, t tilt, 
 		}
 	}
 	sort.SliceStable(es, func(a, b int) bool { return worse(es[a].first, es[b].first) })
+	return fewEachWay(es, mostEdges)
+}
+
+// fewEachWay keeps the first edges each way along each axis, so many.
+func fewEachWay(es []edge, most int) []edge {
 	var few []edge
 	taken := map[[2]int]int{}
 	for _, e := range es {
@@ -186,7 +192,7 @@ func (v *view) paired(pk peaks, within []bool, w window, level float64, t tilt, 
 		if e.out[e.axis] < e.in[e.axis] {
 			way[1] = -1
 		}
-		if taken[way]++; taken[way] <= mostEdges {
+		if taken[way]++; taken[way] <= most {
 			few = append(few, e)
 		}
 	}
@@ -213,6 +219,9 @@ func (c *courses) blend(i, k int, share float64, w window, level float64) path {
 // level, by regula falsi (Illinois). It looks further out on either side where the two neighbours do not bracket the edge there;
 // ok is false where the line does not cross it within the food.
 func (v *view) follow(e edge, through coordinates) (x coordinates, ok bool) {
+	if e.joint != nil {
+		return v.followJoint(e, through)
+	}
 	out := make([]float64, len(v.c.times))
 	on := func(along float64) coordinates {
 		through[e.axis] = along

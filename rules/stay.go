@@ -62,19 +62,26 @@ func (v *view) begins(at float64) bool {
 func (v *view) excursion(level, sign float64) question {
 	l := v.l
 	q := question{unit: "min", need: *l.TimeS / 60, warm: sign > 0}
+	strict := l.Compare == MoreThan || l.Compare == LessThan
+	q.region = func(t tilt) region {
+		switch {
+		case sign > 0 && strict:
+			return atOrBelow(level + t.errK + t.ownK)
+		case sign > 0:
+			return below(level + t.errK + t.ownK)
+		case strict:
+			return atOrAbove(level - t.errK - t.ownK)
+		}
+		return above(level - t.errK - t.ownK)
+	}
 	q.measure = func(p path, t tilt) outcome {
 		c := v.counting(t)
 		if c == NotCounted {
 			c = Continuous // Time is the longest excursion
 		}
-		out, word := below(level+t.errK+t.ownK), "out above"
-		switch strict := l.Compare == MoreThan || l.Compare == LessThan; {
-		case sign < 0 && strict:
-			out, word = atOrAbove(level-t.errK-t.ownK), "out below"
-		case sign < 0:
-			out, word = above(level-t.errK-t.ownK), "out below"
-		case strict:
-			out = atOrBelow(level + t.errK + t.ownK)
+		out, word := q.region(t), "out above"
+		if sign < 0 {
+			word = "out below"
 		}
 		sp := p.stay(v.stages, out)
 		o := v.exposed(sp, c, word, t)

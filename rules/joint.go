@@ -1,0 +1,217 @@
+package rules
+
+import (
+	"math"
+	"sort"
+
+	"slowpoint/model"
+)
+
+// Of a time that is allowed at most, two periods in a region join at the places that do not quite leave it between them: a place whose peak
+// just reaches To of a band spends the whole of it within. On the one side of that edge the time is smooth, on the other it falls
+// with an infinite slope or by a leap. At a place that comes into the region just as the stages begin it has a kink. So the most lies at such
+// edges as often as anywhere, and a search that follows slopes stops before it.
+
+// jointM is how near to an edge a place that joins two periods is looked for, m. The time is smooth on its side.
+const jointM = 1e-6
+
+// joint is what an edge between places of unlike numbers of periods needs.
+type joint struct {
+	region  region
+	pattern int // of the place at the inner end
+	measure measure
+}
+
+// pattern tells courses apart by how many periods they spend in a region, and by whether they are in it as each of the stages begins and ends.
+func (v *view) pattern(p path, r region) int {
+	n := p.stay(v.stages, r).count
+	for _, iv := range v.stages {
+		q := p.in(iv)
+		for _, c := range []float64{q.c[0], q.c[len(q.c)-1]} {
+			if n *= 2; r.holds(c) {
+				n++
+			}
+		}
+	}
+	return n
+}
+
+// jointed is what a look at the edges found: places, and the worst of them with its edge.
+type jointed struct {
+	places []coordinates
+	worst  coordinates
+	by     edge
+	bad    float64 // −Inf: no edge was found
+}
+
+// joints finds the places at the edges between those that are in the region of a question in unlike patterns, at a tilt: the least
+// favourable between neighbouring spots along the axes, so many each way. Edges that are plainly more favourable than the worst
+// candidate are left out.
+func (v *view) joints(s scope, q question, cs []candidate, t tilt, eachWay int) jointed {
+	found := jointed{bad: math.Inf(-1)}
+	if q.region == nil || v.h.Recorded || len(s.spots) == 0 {
+		return found
+	}
+	t.rank = true
+	for _, e := range v.parted(s, q, cs, t, eachWay) {
+		if x, ok := v.follow(e, e.in); ok {
+			found.places = append(found.places, x)
+			if bad := q.measure(v.path(x.place()), t).bad; bad > found.bad {
+				found.worst, found.by, found.bad = x, e, bad
+			}
+		}
+	}
+	return found
+}
+
+// jointsAround finds the places at edges as calculated, the worst moved along its edge, and at both ends of the error, between which that edge moves.
+func (v *view) jointsAround(s scope, q question, cs []candidate) []coordinates {
+	found := v.joints(s, q, cs, tilt{}, mostEdges)
+	places := found.places
+	here := !math.IsInf(found.bad, -1)
+	if here {
+		found.worst = v.slide(found.by, found.worst, q, s.surfaceOnly)
+		places = append(places, found.worst)
+	}
+	if v.errK == 0 {
+		return places
+	}
+	for _, t := range []tilt{v.unfavourable(), {errK: -v.errK}} {
+		if !here {
+			places = append(places, v.joints(s, q, cs, t, 1).places...)
+			continue
+		}
+		e := found.by
+		t.rank = true
+		e.t, e.joint = t, &joint{region: q.region(t), pattern: e.joint.pattern, measure: q.measure}
+		if x, ok := v.follow(e, found.worst); ok {
+			places = append(places, x)
+		}
+	}
+	return places
+}
+
+// mostMoves is how often the room is looked for again at edges that have moved with it.
+const mostMoves = 3
+
+// jointRoom is the room that the places at the edges leave, K, which move as the temperatures of the limit are moved, with the place that has the
+// least; what is given where they leave more.
+func (v *view) jointRoom(s scope, q question, cs []candidate, least float64, where *model.Place) (float64, *model.Place) {
+	for range mostMoves {
+		before := least
+		for _, x := range v.joints(s, q, cs, tilt{ownK: least}, 1).places {
+			p := v.path(x.place())
+			if r := roomBy(q.measure, path{t: p.t, c: p.c}, least); r < least {
+				at := x.place()
+				least, where = r, &at
+			}
+		}
+		if least >= before-sameK || least <= 0 {
+			break
+		}
+	}
+	return least, where
+}
+
+// parted lists the pairs of neighbours of unlike patterns, the worst by their blended courses first.
+func (v *view) parted(s scope, q question, cs []candidate, t tilt, eachWay int) []edge {
+	times, rows := v.c.times, v.c.rows
+	if v.c.roughly(); v.c.rough != nil && len(s.spots) >= manySpots {
+		times, rows = v.c.roughT, v.c.rough
+	}
+	r := q.region(t)
+	patterns, some := make([]int, len(v.c.spots)), map[int]bool{}
+	for i := range patterns {
+		patterns[i] = -1
+	}
+	for _, i := range s.spots {
+		patterns[i] = v.pattern(path{t: times, c: rows[i]}, r)
+		some[patterns[i]] = true
+	}
+	if len(some) < 2 {
+		return nil
+	}
+	bar := outcome{verdict: NotApplicable, bad: math.Inf(-1)}
+	for _, c := range cs {
+		if o := q.measure(c.path, t); worse(o, bar) {
+			bar = o
+		}
+	}
+	bar.bad -= plainly * math.Abs(bar.bad)
+	mixed := path{t: times, c: make([]float64, len(times))}
+	blend := func(i, k int, share float64) path { // of i
+		for n := range mixed.c {
+			mixed.c[n] = rows[k][n] + share*(rows[i][n]-rows[k][n])
+		}
+		return mixed
+	}
+	var es []edge
+	for _, pair := range v.c.neighbours() {
+		i, k := pair.a, pair.b
+		if patterns[i] < 0 || patterns[k] < 0 || patterns[i] == patterns[k] {
+			continue
+		}
+		lo, hi := 0.0, 1.0
+		for range 6 {
+			if m := (lo + hi) / 2; v.pattern(blend(i, k, m), r) == patterns[i] {
+				hi = m
+			} else {
+				lo = m
+			}
+		}
+		e := edge{in: coordinatesOf(v.c.spots[i].Place), out: coordinatesOf(v.c.spots[k].Place), axis: pair.axis, t: t,
+			joint: &joint{region: r, pattern: patterns[i], measure: q.measure}}
+		e.first = q.measure(blend(i, k, hi), t)
+		if o := q.measure(blend(i, k, lo), t); worse(o, e.first) {
+			e.first = o
+		}
+		if !worse(bar, e.first) {
+			es = append(es, e)
+		}
+	}
+	sort.SliceStable(es, func(a, b int) bool { return worse(es[a].first, es[b].first) })
+	return fewEachWay(es, eachWay)
+}
+
+// followJoint finds the place of such an edge on the line along its axis through a place, by halves, and gives the less favourable of its two
+// sides. It looks further out on either side where the two neighbours do not bracket the edge there; ok is false where the line does
+// not cross it within the food.
+func (v *view) followJoint(e edge, through coordinates) (x coordinates, ok bool) {
+	on := func(along float64) coordinates {
+		through[e.axis] = along
+		return through
+	}
+	out := make([]float64, len(v.c.times))
+	inner := func(along float64) bool {
+		at := on(along).place()
+		v.h.Course(at, v.c.times, out)
+		p := path{t: v.c.times, c: out, at: func(t float64) float64 { return v.h.At(at, t) }}
+		return v.pattern(p, e.joint.region) == e.joint.pattern
+	}
+	a, b := e.in[e.axis], e.out[e.axis]
+	in, beyond := inner(a), inner(b)
+	for n := 0; n < 4 && in == beyond; n++ {
+		if d := b - a; in {
+			a, b = b, v.c.inside(e.axis, b+d)
+			beyond = inner(b)
+		} else {
+			a, b = v.c.inside(e.axis, a-d), a
+			in = inner(a)
+		}
+	}
+	if in == beyond {
+		return x, false
+	}
+	for math.Abs(b-a) > jointM {
+		if m := (a + b) / 2; inner(m) == in {
+			a = m
+		} else {
+			b = m
+		}
+	}
+	x = on(a)
+	if y := on(b); worse(e.joint.measure(v.path(y.place()), e.t), e.joint.measure(v.path(x.place()), e.t)) {
+		x = y
+	}
+	return x, true
+}
