@@ -410,6 +410,7 @@ func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *
 	for i := 0; i+1 < len(way.startS); i++ {
 		re.Spans = append(re.Spans, model.Span{Step: &p.Steps[way.first+i], StartS: way.startS[i] - zero, EndS: way.startS[i+1] - zero})
 	}
+	re.Before = p.Steps[:way.first:way.first]
 	from, to := 0, len(log.TimesS)
 	for from < to && log.TimesS[from] < zero-tiny {
 		from++
