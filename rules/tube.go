@@ -395,15 +395,18 @@ func once(r *model.Recording, sign float64) bool {
 // done to it before, nothing bounds the gap on that side, and nothing what lies before the first reading.
 // Where the medium was not recorded, the range known of it counts; where none is, nothing is known: it may have been anything.
 func (s *surroundings) bounds(r *model.Recording, u *tube, i, k int, iv interval) (lo, hi float64) {
+	if iv.b <= r.TimesS[i] {
+		return anyLowC, anyHighC
+	}
 	lo, hi = math.Min(r.C[i], r.C[k]), math.Max(r.C[i], r.C[k])
 	slack := model.MostApartS(s.stepS)
 	if s.m != nil && s.hole >= iv.b && s.m.TimesS[0] <= r.TimesS[0]+slack && s.m.TimesS[0] <= iv.a+slack && s.m.TimesS[len(s.m.TimesS)-1] >= iv.b-slack {
 		n := min(sort.SearchFloat64s(s.m.TimesS, iv.b), len(s.m.TimesS)-1)
 		lo, hi = math.Min(lo, s.lo[n]), math.Max(hi, s.hi[n])
-		if !s.raw && !(s.coldest <= iv.a) || iv.b <= r.TimesS[i] {
+		if !s.raw && !(s.coldest <= iv.a) {
 			lo = anyLowC
 		}
-		if !s.raw && !(s.hottest <= iv.a) || iv.b <= r.TimesS[i] {
+		if !s.raw && !(s.hottest <= iv.a) {
 			hi = anyHighC
 		}
 	} else if !math.IsNaN(r.LowC) && !math.IsNaN(r.HighC) {
