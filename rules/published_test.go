@@ -229,13 +229,12 @@ func (p printed) cooled(from, to, s float64) (met, missed bool) {
 		earliest = 0
 	}
 	// from when it may be down for good, and from when it surely is
-	soonest, last := math.Inf(1), math.Inf(1)
+	soonest, last := 0.0, math.Inf(1)
 	if r.C[n-1] <= to {
 		k := n - 1
 		for k > 0 && r.C[k-1] <= to {
 			k--
 		}
-		soonest = 0
 		if k > 0 {
 			soonest = r.TimesS[k-1]
 		}
