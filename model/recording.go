@@ -7,6 +7,7 @@ type Recording struct {
 	Point
 	Surface bool
 	Spans   []Span    // the steps of the chain that it covers, on the clock of TimesS
+	Before  []Step    // the steps before these; nil where the chain begins with them
 	TimesS  []float64 // s from the start of the chain, rising strictly
 	C       []float64 // °C, corrected, as long as TimesS
 	ErrorK  float64   // accuracy of the instrument and half its resolution, K

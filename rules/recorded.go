@@ -339,6 +339,10 @@ func (d *reading) blame(l *Limit, t *track, f *Finding) string {
 		key := map[int]string{-1: "tube gap before", 0: "tube gap", 1: "tube gap after"}[g.edge]
 		if g.edge == 0 && g.bare() {
 			key = "tube gap bare"
+		} else if g.edge == 0 && g.hi >= anyHighC {
+			key = "tube gap no top"
+		} else if g.edge == 0 && g.lo <= anyLowC {
+			key = "tube gap no bottom"
 		}
 		return say(key, holes{"from": clockTime(g.a), "until": clockTime(g.b), "long": lasting(g.b-g.a, 0), "low": l.degrees(g.lo, -1), "high": l.degrees(g.hi, 1)})
 	}

@@ -270,11 +270,12 @@ type surroundings struct {
 	hole   float64 // where its first hole begins, s; +Inf for none
 	// from when on the measured place was the coldest, and the hottest, of the food, s; NaN where that is not known
 	coldest, hottest float64
+	raw              bool // the record begins with food that nothing was done to
 }
 
 // newSurroundings prepares the recorded medium; it may be nil.
 func newSurroundings(r *model.Recording) *surroundings {
-	s := &surroundings{m: r.Medium, hole: math.Inf(1)}
+	s := &surroundings{m: r.Medium, hole: math.Inf(1), raw: raw(r)}
 	if s.m == nil || len(s.m.TimesS) == 0 || len(s.m.TimesS) != len(s.m.C) || len(r.Gaps) == 0 && within(r.Spans, r.TimesS) {
 		s.m = nil
 		s.hottest, s.coldest = s.foremost(r, 1), s.foremost(r, -1)
@@ -315,14 +316,14 @@ const foremostK, foremostErrors = 1.0, 4.0
 // In food that was heated once and then chilled the heat comes in from all sides and leaves again; while places further out are hotter, the
 // slowest point rises, and once it falls it is the hottest (with the heat equation no new peak forms within a food). From then on only the
 // medium can make another place hotter, no hotter than the medium was since. It is not looked for after a second heating, where heat may still
-// be on its way, and not beyond a gap.
+// be on its way, not beyond a gap, and not where the steps before the record are such that there may have been two.
 func (s *surroundings) foremost(r *model.Recording, sign float64) float64 {
 	known := r.HighC // what the medium never was beyond
 	if sign < 0 {
 		known = r.LowC
 	}
 	switch {
-	case !same(r.Name, "slowest point"), s.m == nil && math.IsNaN(known), s.m != nil && s.m.TimesS[0] > r.TimesS[0]+model.MostApartS(s.stepS):
+	case !same(r.Name, "slowest point"), !s.raw && len(r.Spans) > 0 && !once(r, sign), s.m == nil && math.IsNaN(known), s.m != nil && s.m.TimesS[0] > r.TimesS[0]+model.MostApartS(s.stepS):
 		return math.NaN()
 	}
 	until := len(r.TimesS)
@@ -359,17 +360,55 @@ func (s *surroundings) foremost(r *model.Recording, sign float64) float64 {
 	return math.NaN()
 }
 
+// raw tells whether a record begins with the first step of a chain, and that is a cook or a thaw: then no place of the food was hotter before than
+// what comes, nor colder than what was read.
+func raw(r *model.Recording) bool {
+	if len(r.Before) > 0 || len(r.Spans) == 0 || r.Spans[0].Step == nil {
+		return false
+	}
+	st := r.Spans[0].Step.Stage
+	return st == model.Cook || st == model.Thaw
+}
+
+// once tells whether the food was heated in one go and is chilled when a record begins (sign 1), or the other way round (−1). Of food that comes to the
+// first step of a chain no more is known, and one heating, or chilling, is taken.
+func once(r *model.Recording, sign float64) bool {
+	heats := func(st *model.Step) bool { return st != nil && st.Stage != nil && st.Stage.Heats }
+	last := heats(r.Spans[0].Step)
+	if last == (sign > 0) {
+		return false
+	}
+	for i := len(r.Before) - 1; i >= 0; i-- {
+		now := heats(&r.Before[i])
+		if now == (sign < 0) && last == (sign > 0) { // the other, and what comes before it is once more the same
+			return false
+		}
+		last = now
+	}
+	return true
+}
+
 // bounds are between which temperatures the place may have been in a gap between the readings i and k. No place of a food passes the
 // range of what the food was at and of all surroundings that it has had since (maximum principle): after a cook, places beside the
 // probe may be hotter than it and than the air, and it rises. So the medium counts from the start of the record, not of the gap, unless
-// the measured place was the hottest (coldest) one before.
+// the measured place was the hottest (coldest) one before. What the food was at elsewhere when the record began is not read: unless nothing was
+// done to it before, nothing bounds the gap on that side, and nothing what lies before the first reading.
 // Where the medium was not recorded, the range known of it counts; where none is, nothing is known: it may have been anything.
 func (s *surroundings) bounds(r *model.Recording, u *tube, i, k int, iv interval) (lo, hi float64) {
+	if iv.b <= r.TimesS[i] {
+		return anyLowC, anyHighC
+	}
 	lo, hi = math.Min(r.C[i], r.C[k]), math.Max(r.C[i], r.C[k])
 	slack := model.MostApartS(s.stepS)
 	if s.m != nil && s.hole >= iv.b && s.m.TimesS[0] <= r.TimesS[0]+slack && s.m.TimesS[0] <= iv.a+slack && s.m.TimesS[len(s.m.TimesS)-1] >= iv.b-slack {
 		n := min(sort.SearchFloat64s(s.m.TimesS, iv.b), len(s.m.TimesS)-1)
 		lo, hi = math.Min(lo, s.lo[n]), math.Max(hi, s.hi[n])
+		if !s.raw && !(s.coldest <= iv.a) {
+			lo = anyLowC
+		}
+		if !s.raw && !(s.hottest <= iv.a) {
+			hi = anyHighC
+		}
 	} else if !math.IsNaN(r.LowC) && !math.IsNaN(r.HighC) {
 		lo, hi = math.Min(lo, r.LowC), math.Max(hi, r.HighC)
 	} else {

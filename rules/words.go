@@ -42,6 +42,8 @@ var words = map[string]string{
 	"tube readings":            "; but between two readings, {long} apart at {from}, it may have run otherwise than straight, and that decides, so it cannot be told.",
 	"tube gap":                 "; but nothing was recorded from {from} to {until} ({long}), where it may have been anywhere between {low} and {high}, and that decides, so it cannot be told.",
 	"tube gap bare":            "; but nothing was recorded from {from} to {until} ({long}), neither of it nor of its surroundings, where nothing bounds it, and that decides, so it cannot be told.",
+	"tube gap no top":          "; but nothing was recorded from {from} to {until} ({long}), where it was no colder than {low} and may have risen, for how hot other places were when the record began is not known, and that decides, so it cannot be told.",
+	"tube gap no bottom":       "; but nothing was recorded from {from} to {until} ({long}), where it was no warmer than {high} and may have fallen, for how cold other places were when the record began is not known, and that decides, so it cannot be told.",
 	"tube gap before":          "; but nothing was recorded before {until} ({long}), and that decides, so it cannot be told.",
 	"tube gap after":           "; but nothing was recorded after {from} ({long}), and that decides, so it cannot be told.",
 	"tube gaps":                "; but nothing was recorded in {count} gaps, {long} in all, the first from {from} to {until}, and together they decide, so it cannot be told.",

@@ -366,7 +366,7 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 		}
 	}
 	for i := range findings {
-		r.unread(&findings[i], p.Steps, way, re)
+		r.unread(&findings[i], p, way, re)
 	}
 	stoppedEarly(findings, rec, p.Steps[way.first+len(re.Spans):])
 	m.Judgement = rules.Conclude(findings, r.plan.Groups)
@@ -410,6 +410,7 @@ func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *
 	for i := 0; i+1 < len(way.startS); i++ {
 		re.Spans = append(re.Spans, model.Span{Step: &p.Steps[way.first+i], StartS: way.startS[i] - zero, EndS: way.startS[i+1] - zero})
 	}
+	re.Before = p.Steps[:way.first:way.first]
 	from, to := 0, len(log.TimesS)
 	for from < to && log.TimesS[from] < zero-tiny {
 		from++
@@ -442,14 +443,18 @@ func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *
 
 // unread turns what a record cannot show, for it lacks steps of the chain, into what cannot be told: at most some time in a range, when
 // there was more of it than was read; and a limit on cooling whose clock may have started before the first reading.
-func (r *runner) unread(f *rules.Finding, steps []model.Step, way *ran, re *model.Recording) {
-	l := f.Limit
+func (r *runner) unread(f *rules.Finding, p *workbook.Product, way *ran, re *model.Recording) {
+	l, steps := f.Limit, p.Steps
 	cannot := func(why string) {
 		f.Verdict, f.MarginK, f.MarginS, f.Why = rules.CannotTell, nil, nil, why
 	}
 	begun := &steps[way.first]
-	if first := re.C[0]; l.Kind == rules.CoolWithin && f.Verdict == rules.NotApplicable && l.FromC != nil && l.ToC != nil && first <= *l.FromC+re.ErrorK && first > *l.ToC &&
-		(way.first > 0 || math.IsInf(begun.DurationS, 1)) && (begun.Stage == nil || !begun.Stage.Heats) {
+	crossed := l.FromC
+	if l.Clock.AtC != nil {
+		crossed = l.Clock.AtC
+	}
+	if first := re.C[0]; (l.Kind == rules.CoolWithin || l.Kind == rules.ByTheEnd) && f.Verdict == rules.NotApplicable && crossed != nil && l.ToC != nil && first <= *crossed+re.ErrorK && first > *l.ToC &&
+		(way.first > 0 || math.IsInf(begun.DurationS, 1) || p.StartC > *crossed) && (begun.Stage == nil || !begun.Stage.Heats) {
 		cannot(fmt.Sprintf("The record begins in %s, when the place was at %s already: when its clock started was not read, so it cannot be told.", begun.Name, r.degrees(first, false)))
 		return
 	}

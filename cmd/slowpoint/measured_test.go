@@ -620,6 +620,9 @@ func TestInexact(t *testing.T) {
 // TestUnread: what was not recorded is not taken for met, and a clock that may have started before the first reading not for none.
 func TestUnread(t *testing.T) {
 	steps := []model.Step{{Name: "bake", Stage: model.Cook, DurationS: 600}, {Name: "chill", Stage: model.Cool, DurationS: 600}, {Name: "shelf", Stage: model.HoldCold, DurationS: 600}}
+	planned := func(startC float64) *workbook.Product {
+		return &workbook.Product{Product: model.Product{StartC: startC}, Steps: steps}
+	}
 	from, to := 60.0, 5.0
 	for _, c := range []struct {
 		name    string
@@ -644,15 +647,37 @@ func TestUnread(t *testing.T) {
 	} {
 		f := &rules.Finding{Limit: &rules.Limit{Kind: c.kind, Stages: c.stages, FromC: &from, ToC: &to}, Verdict: c.verdict, Why: "It was so."}
 		r := &runner{head: &report.Head{}}
-		r.unread(f, steps, &ran{first: c.first, startS: c.startS}, &model.Recording{C: []float64{c.begins}})
+		r.unread(f, planned(20), &ran{first: c.first, startS: c.startS}, &model.Recording{C: []float64{c.begins}})
 		if f.Verdict != c.want {
 			t.Errorf("%s: %v (%s), want %v", c.name, f.Verdict, f.Why, c.want)
+		}
+	}
+	// a chain that begins with its chill, a clock that starts at a temperature of its own, and a temperature some time after it
+	chill := steps[1:2]
+	for _, c := range []struct {
+		name                   string
+		kind                   *rules.Kind
+		startC, begins, atC, x float64
+		want                   rules.Verdict
+	}{
+		{"planned hot, read cold", rules.CoolWithin, 75, 37, 60, 5, rules.CannotTell},
+		{"planned cold", rules.CoolWithin, 37, 37, 60, 5, rules.NotApplicable},
+		{"planned hot, by the end", rules.ByTheEnd, 75, 37, 60, 21, rules.CannotTell},
+		{"below the end already", rules.CoolWithin, 75, 4, 60, 5, rules.NotApplicable},
+	} {
+		f := &rules.Finding{Limit: &rules.Limit{Kind: c.kind, ToC: &c.x, Clock: rules.Clock{Crossing: true, AtC: &c.atC}}, Verdict: rules.NotApplicable}
+		p := planned(c.startC)
+		p.Steps = chill
+		r := &runner{head: &report.Head{}}
+		r.unread(f, p, &ran{first: 0, startS: []float64{0, 600}}, &model.Recording{C: []float64{c.begins}})
+		if f.Verdict != c.want {
+			t.Errorf("%s: %v, want %v", c.name, f.Verdict, c.want)
 		}
 	}
 	for fahrenheit, want := range map[bool]string{false: "at 40.4 °C already", true: "at 104.72 °F already"} { // 40.4 °C is 104.72 °F
 		f := &rules.Finding{Limit: &rules.Limit{Kind: rules.CoolWithin, FromC: &from, ToC: &to}, Verdict: rules.NotApplicable}
 		r := &runner{head: &report.Head{Fahrenheit: fahrenheit}}
-		r.unread(f, steps, &ran{first: 1, startS: []float64{0, 600}}, &model.Recording{C: []float64{40.4}})
+		r.unread(f, planned(20), &ran{first: 1, startS: []float64{0, 600}}, &model.Recording{C: []float64{40.4}})
 		if !strings.Contains(f.Why, want) {
 			t.Errorf("%q, want %q", f.Why, want)
 		}

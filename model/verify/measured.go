@@ -116,6 +116,9 @@ func timed(p model.Product, steps ...model.Step) timing {
 	return timing{sync.OnceValues(Problem{"measured case", p, steps}.history), 3600}
 }
 
+// startsK is how near to a temperature a centre has to begin to begin there, K: beyond what a solution rounds.
+const startsK = 1e-6
+
 // from starts its clock when the centre passes fromC, or at once where it starts there. What is cooked first and cooled then is looked at
 // from the instant at which its centre is hottest.
 func (m timing) from(fromC, toC float64) func() (float64, error) {
@@ -125,7 +128,7 @@ func (m timing) from(fromC, toC float64) func() (float64, error) {
 			return 0, err
 		}
 		start := 0.0
-		if toC < fromC && h.At(model.Place{}, 0) < fromC {
+		if toC < fromC && h.At(model.Place{}, 0) < fromC-startsK {
 			for t := 0.0; t < h.EndS(); t += 60 {
 				if h.At(model.Place{}, t) > h.At(model.Place{}, start) {
 					start = t
@@ -133,7 +136,7 @@ func (m timing) from(fromC, toC float64) func() (float64, error) {
 			}
 		}
 		since := start
-		if c := h.At(model.Place{}, since); (c > fromC) == (fromC > toC) && c != fromC {
+		if c := h.At(model.Place{}, since); (c > fromC) == (fromC > toC) && math.Abs(c-fromC) > startsK {
 			if start, err = passingSince(h, model.Place{}, fromC, since); err != nil {
 				return 0, err
 			}

@@ -5,6 +5,7 @@ import (
 	"strings"
 	"testing"
 
+	"slowpoint/model"
 	"slowpoint/testdata/measured"
 	"slowpoint/testdata/published"
 )
@@ -40,5 +41,22 @@ func TestMeasuredCases(t *testing.T) {
 		if !seen[key] {
 			t.Errorf("%s stands in the table and is not predicted", key)
 		}
+	}
+}
+
+// TestMeasuredClockAtOnce: the clock of what begins at the temperature from which it is timed starts with its first step.
+func TestMeasuredClockAtOnce(t *testing.T) {
+	long := timed(pieceOf("Ham, sliced, regular (11% fat)", model.Brick, model.Size{ThicknessM: 0.12, WidthM: 0.12, LengthM: 0.4}, 70),
+		step("spray", 1800, model.Exposure{Surface: model.StirredWater, Medium: constant(18)}), step("chill", 6*3600, blown(3, 0)))
+	got, err := long.from(70, 40)()
+	if err != nil {
+		t.Fatal(err)
+	}
+	h, err := long.solve()
+	if err != nil {
+		t.Fatal(err)
+	}
+	if c := h.At(model.Place{}, 3600*got); math.Abs(c-40) > 1e-3 {
+		t.Errorf("%g °C %g h after the start, want 40", c, got)
 	}
 }
