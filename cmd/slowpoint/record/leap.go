@@ -279,7 +279,7 @@ func (r *reader) leapt(t *taker, l *Leap) cell.Error {
 	if l.Last < l.First {
 		return putInto.problem(at, cell.Warning, "", typed, from, long)
 	}
-	food := "the core of a food can move unless it is thinner than 15 mm"
+	food := "the core of a food can move unless it is thin"
 	if r.set.Food.SettleS > 0 {
 		food = "this food can move there"
 	}
