@@ -47,7 +47,7 @@ type Log struct {
 	ResolutionK  float64   // smallest step of the readings, K
 	Gaps         []int     // i: readings are lacking between i and i+1, which lie more than three times the usual time or more than an hour apart
 	Doubtful     []int     // readings that jump faster than their neighbours allow, or may be cut off
-	Leaps        []Leap    // of a place within a food, rising
+	Leaps        []Leap    // of a place within a food, rising; their problems are not among Problems: readings outside the steps do not count
 	Missing      int       // rows without a reading
 	Rows         int       // rows of the table
 	About        []string  // lines above the table, as typed
