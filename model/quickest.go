@@ -4,7 +4,7 @@ import "math"
 
 // Quickness is how fast a place within a food can follow what surrounds it at most.
 type Quickness struct {
-	SettleS float64 // the time constant with which it follows a surface that is held at a new temperature, s
+	SettleS float64 // the time constant with which it follows surroundings that step to a new temperature, s
 	ShareS  float64 // the most that it moves in a second, as a share of the range of all temperatures that its surface and its start had, 1/s
 }
 
@@ -23,62 +23,74 @@ const (
 	ballSettles, ballSlope         = math.Pi * math.Pi, 5.923
 )
 
-// Quickest says how fast a place can follow at most, with the quickest of the properties that the food has from lowC to highC. A nil place is the slowest
-// point, which is no quicker than the centre; any other is taken for the centre of the largest ball around it within the food. In shapes with several
-// directions the slopes and the rates of decay add up. ok is false where conduction sets no bound (stirred) or the product is not known in full.
-func Quickest(p *Product, at *Place, lowC, highC float64) (q Quickness, ok bool) {
+// With a film the centre is slower: the first rate of decay is near that of both resistances in a row, 1/(d²/(α·λ²) + d·ρc/(n·h)) with n = 1, 2, 3 for slab,
+// cylinder and sphere (exact for little and for much film; in between at most 5 % too slow for a slab, 9 % for a cylinder and 12 % for a sphere, held by a test), and the slope is no steeper
+// than that of a stirred mass, n·h/(d·ρc).
+
+// Quickest says how fast a place can follow at most, with the quickest of the properties that the food has from lowC to highC, and films of no more than
+// filmW, W/(m²·K); +Inf: its surface may be held. A nil place is the slowest point, which is no quicker than the centre; any other is taken for the centre
+// of the largest ball around it within the food, held. In shapes with several directions the slopes and the rates of decay add up. ok is false where
+// conduction sets no bound (stirred) or the product is not known in full.
+func Quickest(p *Product, at *Place, lowC, highC, filmW float64) (q Quickness, ok bool) {
 	if p.Shape == nil || p.Shape == Stirred {
 		return q, false
 	}
-	alpha := 0.0 // m²/s
+	alpha, holds := 0.0, math.Inf(1) // m²/s, J/(m³·K)
 	for _, f := range p.Foods() {
-		alpha = math.Max(alpha, f.quickest(lowC, highC))
+		a, h := f.quickest(lowC, highC)
+		alpha, holds = math.Max(alpha, a), math.Min(holds, h)
 	}
-	if !(alpha > 0) || math.IsInf(alpha, 0) {
+	if !(alpha > 0) || math.IsInf(alpha, 0) || !(filmW > 0) {
 		return q, false
 	}
-	settles, slope := 0.0, 0.0 // 1/m²
-	add := func(lambda, most, m float64) {
-		settles, slope = settles+lambda/(m*m), slope+most/(m*m)
+	rate := 0.0 // 1/s
+	add := func(settles, slope, n, m float64) {
+		if m == 0 || math.IsInf(m, 1) {
+			return
+		}
+		behind := m * holds / (n * filmW) // s
+		rate += 1 / (m*m/(alpha*settles) + behind)
+		q.ShareS += math.Min(alpha*slope/(m*m), 1/behind)
 	}
 	r := reach(p)
 	switch {
 	case at != nil && *at != Place{}:
-		add(ballSettles, ballSlope, p.deep(*at))
+		filmW = math.Inf(1)
+		add(ballSettles, ballSlope, 3, p.deep(*at))
 	case p.Shape == Cylinder:
-		add(cylinderSettles, cylinderSlope, r[0])
+		add(cylinderSettles, cylinderSlope, 2, r[0])
 	case p.Shape == ShortCylinder:
-		add(slabSettles, slabSlope, r[0])
-		add(cylinderSettles, cylinderSlope, r[1])
+		add(slabSettles, slabSlope, 1, r[0])
+		add(cylinderSettles, cylinderSlope, 2, r[1])
 	case p.Shape == Sphere, p.Shape == Spheroid:
-		add(ballSettles, ballSlope, p.deep(Place{}))
+		add(ballSettles, ballSlope, 3, p.deep(Place{}))
 	default:
 		for _, m := range r {
-			add(slabSettles, slabSlope, m)
+			add(slabSettles, slabSlope, 1, m)
 		}
 	}
-	q = Quickness{SettleS: 1 / (alpha * settles), ShareS: alpha * slope}
-	return q, settles > 0 && !math.IsInf(settles, 0)
+	q.SettleS = 1 / rate
+	return q, rate > 0
 }
 
-// quickest is the highest thermal diffusivity of a food from lowC to highC, m²/s; 0 where it is not known.
-func (f *Material) quickest(lowC, highC float64) float64 {
+// quickest is the highest thermal diffusivity of a food from lowC to highC, m²/s, and the least heat that it holds, J/(m³·K); 0 where it is not known.
+func (f *Material) quickest(lowC, highC float64) (alpha, holds float64) {
+	holds = math.Inf(1)
 	if f.Props == nil {
-		return 0
+		return 0, holds
 	}
 	const steps = 40
-	most := 0.0
 	for i := 0; i <= steps; i++ {
 		c := lowC + (highC-lowC)*float64(i)/steps
 		if f.LowC != 0 || f.HighC != 0 {
 			c = math.Max(f.LowC, math.Min(c, f.HighC))
 		}
 		q := f.Props(c)
-		if a := q.KWmK / (q.RhoKgM3 * q.CJkgK); a > most {
-			most = a
+		if h := q.RhoKgM3 * q.CJkgK; h > 0 {
+			alpha, holds = math.Max(alpha, q.KWmK/h), math.Min(holds, h)
 		}
 	}
-	return most
+	return alpha, holds
 }
 
 // deep is how far a place lies within the food, m: no more than to its nearest surface; 0 on it.

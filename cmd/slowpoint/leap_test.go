@@ -24,10 +24,10 @@ func leapPlan(t *testing.T, dir string) (whole, bare string) {
 	whole, bare = filepath.Join(dir, "plan"), filepath.Join(dir, "bare")
 	writePlan(t, bare, map[string]string{"Limits": limits})
 	writePlan(t, whole, map[string]string{
-		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nTray,Oven,slab,40,Mash,5\nHot tray,Chiller,slab,40,Mash,85\nHot slice,Chiller,slab,4,Mash,85\n",
+		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nTray,Oven,slab,40,Mash,5\nHot tray,Chiller,slab,40,Mash,85\nThin tray,Chiller,slab,25,Mash,85\nHot slice,Ice bath,slab,4,Mash,85\n",
 		"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Source\nMash,0.5,1050,3600,no,invented\n",
 		"Steps": "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\n" +
-			"Oven,bake,cook,120,film,130,15\nChiller,chill,cool,480,film,1,10\n",
+			"Oven,bake,cook,120,film,130,15\nChiller,chill,cool,480,film,1,10\nIce bath,chill,cool,480,film,1,500\n",
 		"Limits": limits,
 	})
 	return whole, bare
@@ -126,6 +126,7 @@ func TestLeapsAreNotMet(t *testing.T) {
 		{"pulled, every 10 s, a sensor of 30 s", away(slow(10), 31.6, 3.0, 10, 30, 0), 10, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
 		{"pulled, every 10 s, a sensor of 10 s", away(slow(10), 31.6, 3.0, 10, 10, 0), 10, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
 		{"pulled, every 5 min", away(slow(300), 31.6, 3.0, 300, 0, 0), 300, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
+		{"pulled, every 5 min, of 25 mm", away(centreOf(t, 0.025, 85, 1, 6, 300, 28800), 31.6, 3.0, 300, 0, 0), 300, 1, "Thin tray", "cool", "", cannotTell, "faster than this food"},
 		{"pulled, to the degree", away(slow(60), 31.6, 3.0, 60, 0, 0), 60, 0, "Hot tray", "cool", "", cannotTell, "faster than this food"},
 		{"at the last reading", last, 60, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
 		{"unplugged, at room temperature", away(slow(60), 31.6, 20.5, 60, 0, 0), 60, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},

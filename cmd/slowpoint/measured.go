@@ -76,8 +76,8 @@ func foodAt(rec *workbook.Record) *record.Food {
 		return f
 	}
 	p := rec.Products[0]
-	lo, hi, whole := surroundedBy(p)
-	if q, ok := model.Quickest(&p.Product, at, lo, hi); ok {
+	lo, hi, film, whole := surroundedBy(p)
+	if q, ok := model.Quickest(&p.Product, at, lo, hi, filmOff*film); ok {
 		f.SettleS = q.SettleS
 		if whole {
 			f.ShareS, f.LowC, f.HighC = q.ShareS, lo, hi
@@ -86,8 +86,12 @@ func foodAt(rec *workbook.Record) *record.Food {
 	return f
 }
 
-// surroundedBy is the range of the temperatures that a product starts at and meets by the plan, °C; whole tells that every step says its own.
-func surroundedBy(p *workbook.Product) (lo, hi float64, whole bool) {
+// filmOff is how many times as high as typed a film may be before what a food does may be taken for a leap; own choice.
+const filmOff = 3.0
+
+// surroundedBy is the range of the temperatures that a product starts at and meets by the plan, °C, and the highest film, W/(m²·K), +Inf where any is not
+// typed; whole tells that every step says its temperature.
+func surroundedBy(p *workbook.Product) (lo, hi, film float64, whole bool) {
 	lo, hi, whole = p.StartC, p.StartC, len(p.Steps) > 0
 	take := func(e *model.Exposure) {
 		cs := e.Medium.C
@@ -96,6 +100,13 @@ func surroundedBy(p *workbook.Product) (lo, hi float64, whole bool) {
 		}
 		for _, c := range cs {
 			lo, hi = min(lo, c), max(hi, c)
+		}
+		switch {
+		case e.Surface == model.Insulated:
+		case e.Surface == model.Film && e.FilmW != nil:
+			film = max(film, *e.FilmW)
+		default:
+			film = math.Inf(1)
 		}
 		whole = whole && e.Surface != nil && (len(cs) > 0 || e.Surface.NoMedium)
 	}
@@ -106,7 +117,10 @@ func surroundedBy(p *workbook.Product) (lo, hi float64, whole bool) {
 			take(&st.Faces[k].Exposure)
 		}
 	}
-	return lo, hi, whole
+	if film == 0 { // no step says
+		film = math.Inf(1)
+	}
+	return lo, hi, film, whole
 }
 
 // ran is the steps of a chain as a record has them.

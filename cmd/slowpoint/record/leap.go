@@ -9,7 +9,7 @@ import (
 
 // Food is a place within a food whose temperature a channel shows.
 type Food struct {
-	SettleS     float64 // how soon it settles once its surface is held at a new temperature at the soonest (model.Quickness), s; 0: not known
+	SettleS     float64 // how soon it settles once its surroundings change, at the soonest (model.Quickness), s; 0: not known
 	ShareS      float64 // the most that it moves in a second, as a share of the range of its surroundings, 1/s; 0: not known
 	LowC, HighC float64 // that range, °C; NaN: not known
 }
@@ -32,7 +32,7 @@ type Leap struct {
 //
 // It is faster than a known food can move: twice over, for a plan whose thickness or conductivity is off, or by any amount if it is sharp as well.
 //
-// It is the last that was read, so that nothing shows how it ends. Then it must be sharp on the side before it, and faster than the food can move; of
+// It is the last that was read, or the first, so that nothing shows how it ends or began. Then it must be sharp on the other side, and faster than the food can move; of
 // a food that is not known, of 10 K.
 const (
 	sharply     = 8.0
@@ -182,15 +182,16 @@ func (s *leaper) isLeap(i, j int) bool {
 		return false
 	}
 	quiet := away / sharply
+	open := true // what came before it, or comes after it, was not read for as long
 	for h := i - 1; h >= 0; h-- {
 		if math.Abs(s.c[h]-s.c[i]) >= quiet*math.Max(1, (s.t[i]-s.t[h])/long) {
 			return false
 		}
-		if s.t[i]-s.t[h] >= quietTimes*long-sameS {
+		if open = s.t[i]-s.t[h] < long-sameS; s.t[i]-s.t[h] >= quietTimes*long-sameS {
 			break
 		}
 	}
-	ends := true // what comes after it was not read
+	ends := true
 	for k := j + 1; k < len(s.c); k++ {
 		if math.Abs(s.c[k]-s.c[j]) >= quiet*math.Max(1, (s.t[k]-s.t[j])/long) {
 			return false
@@ -199,13 +200,14 @@ func (s *leaper) isLeap(i, j int) bool {
 			break
 		}
 	}
+	open = open || ends
 	switch {
 	case s.food.SettleS == 0:
-		return !ends || away >= lastLeap
+		return !open || away >= lastLeap
 	case s.mostC > 0 && away > s.mostC*long+s.resK:
 		return true
 	}
-	return !ends && long <= s.food.SettleS/ofSettling
+	return !open && long <= s.food.SettleS/ofSettling
 }
 
 // onset is the last reading before a leap between i and j.

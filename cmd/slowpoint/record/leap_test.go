@@ -28,18 +28,19 @@ func drawnProbe(t *testing.T, rng *rand.Rand, stepS, noiseK float64) (*model.Pro
 	size := between(0.010, 0.150)
 	p := &model.Product{Name: "drawn", Food: food, Shape: []*model.Shape{model.Slab, model.Cylinder, model.Sphere, model.Brick}[rng.IntN(4)], StartC: 2 + 23*rng.Float64(),
 		Size: model.Size{ThicknessM: size, DiameterM: size, WidthM: size * between(1, 2), LengthM: size * between(1, 3)}}
+	topW := between(20, 1000) // of the chain, W/(m²·K)
 	var steps []model.Step
-	lo, hi := p.StartC, p.StartC
+	lo, hi, film := p.StartC, p.StartC, 0.0
 	what := fmt.Sprintf("%s of %.1f mm from %.0f °C", p.Shape.Name, 1000*size, p.StartC)
 	for _, st := range []struct {
 		stage  *model.Stage
 		lo, hi float64
 	}{{model.Cook, 70, 200}, {model.Rest, 15, 30}, {model.Cool, -1, 5}, {model.Reheat, 70, 140}, {model.Cool, 0, 5}} {
-		h, c, long := between(5, 1000), st.lo+(st.hi-st.lo)*rng.Float64(), between(600, 10000)
+		h, c, long := between(5, topW), st.lo+(st.hi-st.lo)*rng.Float64(), between(600, 10000)
 		if stepS*8 > long {
 			long = stepS * 8
 		}
-		lo, hi = math.Min(lo, c), math.Max(hi, c)
+		lo, hi, film = math.Min(lo, c), math.Max(hi, c), math.Max(film, h)
 		steps = append(steps, model.Step{Name: st.stage.Name, Stage: st.stage, DurationS: long,
 			Exposure: model.Exposure{Surface: model.Film, FilmW: &h, Medium: model.Course{TimesS: []float64{0}, C: []float64{c}}}})
 		what += fmt.Sprintf("; %.0f s at %.0f °C, %.0f W/m²K", long, c, h)
@@ -58,7 +59,7 @@ func drawnProbe(t *testing.T, rng *rand.Rand, stepS, noiseK float64) (*model.Pro
 		c[i] += noiseK * rng.NormFloat64()
 	}
 	f := Food{LowC: lo, HighC: hi}
-	if q, ok := model.Quickest(p, nil, lo, hi); ok {
+	if q, ok := model.Quickest(p, nil, lo, hi, 3*film); ok { // films may be three times as high as typed
 		f.SettleS, f.ShareS = q.SettleS, q.ShareS
 	} else {
 		t.Fatal(what, "is not known")
