@@ -373,7 +373,7 @@ var words = map[string]string{
 	"col value":                 "Found",
 	"record lacking":            "Lacking",
 	"record missing":            "%d readings are missing.",
-	"record doubtful":           "%d readings are doubtful: they jump faster than those beside them, or may be cut off.",
+	"record doubtful":           "%d readings are doubtful: they jump faster than those beside them, come after a leap that no food can make, or may be cut off.",
 	"record gaps":               "Gaps",
 	"record gap":                "%s to %s (%s)",
 	"record left":               "Left out",

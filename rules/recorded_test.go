@@ -166,6 +166,8 @@ func TestRecorded(t *testing.T) {
 		{"two spikes, of which one decides", below(40), "store 0-60", "0:4 10:4 20:30? 30:4 40:50? 50:4 60:4", nil, CannotTell, "the reading of 50 °C at 40 min is doubtful"},
 		{"two spikes, of which either decides", below(8), "store 0-60", "0:4 10:4 20:30? 30:4 40:50? 50:4 60:4", nil, CannotTell, "2 readings are doubtful, the first of 30 °C at 20 min"},
 		{"a last reading that may be cut off", below(8), "store 0-30", "0:4 10:4 20:4 30:40?", nil, CannotTell, "the reading of 40 °C at 30 min is doubtful"},
+		{"two doubted that change nothing", below(8), "store 0-60", "0:4 10:4 20:5? 30:5? 40:4 50:4 60:4", nil, Met, ""},
+		{"three doubted leave a gap", below(8), "store 0-60", "0:4 10:4 20:5? 30:5? 40:5? 50:4 60:4", nil, CannotTell, "3 readings are doubtful, the first of 5 °C at 20 min"},
 		{"a dip that would break a hold", hold(20, Continuous), "cook 0-40", "0:71 10:71 20:40? 30:71 40:71", nil, CannotTell, "is doubtful"},
 
 		{"whole degrees decide", below(5), "store 0-40", "0:4 10:4 20:5 30:4 40:4", func(r *model.Recording) { r.ErrorK = 0.5 }, CannotTell, "by how much the readings may be off (0.5 °C) decides"},

@@ -157,6 +157,9 @@ func (b *layer) next(i int) (next int, isGap bool) {
 		isGap = isGap || b.gaps[next]
 		next++
 	}
+	if next > i+1 && next <= b.last && b.r.TimesS[next]-b.r.TimesS[i] > model.MostApartS(b.u.usualS)+sameS { // what is left out leaves a gap
+		isGap = true
+	}
 	return next, isGap
 }
 

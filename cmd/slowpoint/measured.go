@@ -57,7 +57,70 @@ func settingOf(rec *workbook.Record, path string, today time.Time) record.Settin
 	if rec.AccuracyK != nil {
 		s.AccuracyK = *rec.AccuracyK
 	}
+	s.Food = foodAt(rec)
 	return s
+}
+
+// foodAt is what the plan tells of the place that a probe measures; nil where it may leap with its surroundings, or nobody knows where it is.
+func foodAt(rec *workbook.Record) *record.Food {
+	var at *model.Place // nil: the slowest point
+	switch rec.Of {
+	case workbook.AtSlowest:
+	case workbook.AtPoint:
+		at = &rec.Place.Place
+	default:
+		return nil
+	}
+	f := &record.Food{LowC: math.NaN(), HighC: math.NaN()}
+	if len(rec.Products) == 0 {
+		return f
+	}
+	p := rec.Products[0]
+	lo, hi, film, whole := surroundedBy(p)
+	if q, ok := model.Quickest(&p.Product, at, lo, hi, filmOff*film); ok {
+		f.SettleS = q.SettleS
+		if whole {
+			f.ShareS, f.LowC, f.HighC = q.ShareS, lo, hi
+		}
+	}
+	return f
+}
+
+// filmOff is how many times as high as typed a film may be before what a food does may be taken for a leap; own choice.
+const filmOff = 3.0
+
+// surroundedBy is the range of the temperatures that a product starts at and meets by the plan, °C, and the highest film, W/(m²·K), +Inf where any is not
+// typed; whole tells that every step says its temperature.
+func surroundedBy(p *workbook.Product) (lo, hi, film float64, whole bool) {
+	lo, hi, whole = p.StartC, p.StartC, len(p.Steps) > 0
+	take := func(e *model.Exposure) {
+		cs := e.Medium.C
+		if e.RadiatingC != nil {
+			cs = append(slices.Clone(cs), *e.RadiatingC)
+		}
+		for _, c := range cs {
+			lo, hi = min(lo, c), max(hi, c)
+		}
+		switch {
+		case e.Surface == model.Insulated:
+		case e.Surface == model.Film && e.FilmW != nil:
+			film = max(film, *e.FilmW)
+		default:
+			film = math.Inf(1)
+		}
+		whole = whole && e.Surface != nil && (len(cs) > 0 || e.Surface.NoMedium)
+	}
+	for i := range p.Steps {
+		st := &p.Steps[i]
+		take(&st.Exposure)
+		for k := range st.Faces {
+			take(&st.Faces[k].Exposure)
+		}
+	}
+	if film == 0 { // no step says
+		film = math.Inf(1)
+	}
+	return lo, hi, film, whole
 }
 
 // ran is the steps of a chain as a record has them.
@@ -433,9 +496,11 @@ func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *
 			m.Gaps = append(m.Gaps, [2]float64{re.TimesS[g-from], re.TimesS[g-from+1]})
 		}
 	}
-	for _, d := range log.Doubtful {
-		if d >= from && d < to {
-			re.Doubted = append(re.Doubted, d-from)
+	re.Doubted = log.Doubted(from, to, from)
+	for i := range log.Leaps {
+		if l := &log.Leaps[i]; l.Before >= from && l.First < to {
+			m.Problems.Add(l.Problem)
+			m.Doubtful += min(l.Last+1, to) - l.First
 		}
 	}
 	return re, lines
@@ -497,11 +562,7 @@ func bordered(re *model.Recording, log *record.Log, way *ran) *model.Recording {
 			out.Gaps = append(out.Gaps, g-first+lead)
 		}
 	}
-	for _, d := range log.Doubtful {
-		if d >= first-lead && d <= last+trail {
-			out.Doubted = append(out.Doubted, d-first+lead)
-		}
-	}
+	out.Doubted = log.Doubted(first-lead, last+trail+1, first)
 	return &out
 }
 

@@ -83,6 +83,9 @@ func (c *trial) setting(t *testing.T, key, value string) {
 		c.set.Missing = strings.Split(value, ",")
 	case "correction":
 		c.set.Corrections, err = strconv.ParseFloat(value, 64)
+	case "settles":
+		c.set.Food = &Food{LowC: math.NaN(), HighC: math.NaN()}
+		c.set.Food.SettleS, err = strconv.ParseFloat(value, 64)
 	case "today":
 		c.set.Today, err = time.Parse("2006-01-02", value)
 	default:
@@ -128,6 +131,9 @@ func said(l *Log, problems cell.Errors) string {
 	}
 	if len(l.Gaps)+len(l.Doubtful) > 0 {
 		fmt.Fprintf(&b, "gaps %v, doubtful %v\n", l.Gaps, l.Doubtful)
+	}
+	for _, p := range l.Leaps {
+		fmt.Fprintf(&b, "leaps after %d, doubtful %d to %d\n%s: %s\n", p.Before, p.First, p.Last, p.Problem.Level, p.Problem.Error())
 	}
 	for i := range l.C {
 		if i == 4 && len(l.C) > 8 {

@@ -34,6 +34,7 @@ func (r *reader) constant(t *taker) {
 func (r *reader) check(t *taker, start float64) {
 	r.gaps(t, start)
 	r.jumps(t)
+	r.leaps(t)
 	r.stopped(t)
 	r.years(t)
 }

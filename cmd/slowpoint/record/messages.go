@@ -133,6 +133,8 @@ var (
 	cutReading  = saying{"stands at the end of the file, in a line without an end, and is shorter than the readings above: it may be cut off, and is kept", "export the record again, or take the line out"}
 	frozen      = saying{"is read {1} times in a row, up to {2}: the sensor may have stopped", "check the logger"}
 	doubtful    = saying{"jumps away from {1} before and {2} after it, and is kept", "look at the record there: a loose plug or a moved probe?"}
+	leapt       = saying{"comes {2} after {1}, faster than {3}; {4} kept, and doubtful", "was the probe pulled out or unplugged, write in Starts at when the readings of the food begin or end (end 13:30); was it moved, look at the record there"}
+	putInto     = saying{"comes {2} after {1}, as when the probe is put into the food; what was read before is kept", "if so, write in Starts at when the first step began"}
 	farApart    = saying{"The readings lie {1} apart as a rule; in more than {2} without a reading it may have been anywhere", "let a logger record it, or read it every hour"}
 	gap         = saying{"No reading between {1} and {2}: {3}, where {4} is usual", ""}
 	springGap   = saying{"No reading between {1} and {2}: {3}, where {4} is usual; clocks are set forward by an hour in such nights, which would be no gap", "if the clock of the logger was, export the record in UTC"}

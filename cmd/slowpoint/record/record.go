@@ -26,6 +26,7 @@ type Setting struct {
 	Missing     []string            // further words for a reading that is missing
 	Corrections float64             // K added to every reading
 	AccuracyK   float64             // of the instrument, K; 0 if not stated
+	Food        *Food               // what is known of the place that it shows; nil where that may leap: the surface, the surroundings
 	Today       time.Time           // for dates in the future or long ago; the zero time: they are not looked for
 	Cells       map[string]cell.Ref // where each setting stands, by the column of the sheet Records or the item of the sheet Plan; the zero Ref if nowhere
 }
@@ -46,6 +47,7 @@ type Log struct {
 	ResolutionK  float64   // smallest step of the readings, K
 	Gaps         []int     // i: readings are lacking between i and i+1, which lie more than three times the usual time or more than an hour apart
 	Doubtful     []int     // readings that jump faster than their neighbours allow, or may be cut off
+	Leaps        []Leap    // of a place within a food, rising; their problems are not among Problems: readings outside the steps do not count
 	Missing      int       // rows without a reading
 	Rows         int       // rows of the table
 	About        []string  // lines above the table, as typed

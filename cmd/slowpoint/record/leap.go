@@ -1,0 +1,320 @@
+package record
+
+import (
+	"math"
+	"sort"
+
+	"slowpoint/model/cell"
+)
+
+// Food is a place within a food whose temperature a channel shows.
+type Food struct {
+	SettleS     float64 // how soon it settles once its surroundings change, at the soonest (model.Quickness), s; 0: not known
+	ShareS      float64 // the most that it moves in a second, as a share of the range of its surroundings, 1/s; 0: not known
+	LowC, HighC float64 // that range, °C; NaN: not known
+}
+
+// Leap is a move that is faster than a food can move, after which the readings may be of something else.
+type Leap struct {
+	Before      int // the last reading before it
+	First, Last int // the readings that are doubtful; Last < First: none, the probe was put in there
+	Problem     cell.Error
+}
+
+// A leap is told from a move of the food in one of three ways. All figures are our own choice; what a food can do is computed (model.Quickest) and
+// held against histories of the exact model by tests.
+//
+// It begins and ends too sharply. A food smooths what its surroundings do: in up to a quarter of the time in which it settles it does not move sharply
+// times as fast as in the three times as long before, and after (in 3000 drawn pieces, films and chains 6.6 times at most). A probe that was
+// pulled out or unplugged settles within a minute or two. Of a food that is not known little is taken for granted: that it is no slab under 20 mm, nor
+// a cylinder under 30 mm; and, for readings that lie further apart than unknownS, up to 5 min, no slab under 36 mm. A thinner piece may then be
+// doubted, which the thickness in the plan mends.
+//
+// It is faster than a known food can move: twice over, for a plan whose thickness or conductivity is off, or by any amount if it is sharp as well.
+//
+// It is the last that was read, or the first, so that nothing shows how it ends or began. Then it must be sharp on the other side, and faster than the food can move; of
+// a food that is not known, of 10 K.
+const (
+	sharply     = 8.0
+	quietTimes  = 3.0   // how many times as long as the move the readings before and after it are looked at
+	ofSettling  = 4.0   // the part of the time of settling
+	leapS       = 900.0 // of a food that is known; sensors follow within that
+	unknownS    = 90.0  // of a food that is not
+	unknownOneS = 300.0 // from a reading to the next
+	twiceOver   = 2.0
+	lastLeap    = 10.0 // K
+)
+
+// Readings have come back when, within backS, they go back by at least half of how far they were away, as fast as a leap, to within a quarter of it of
+// the last reading before it, and backLeast of them in a row stay there. Otherwise they are doubted to the end. Own choice.
+const (
+	backS     = 3600.0
+	backLeast = 3
+	backK     = 2.0 // near enough in any case
+)
+
+// A probe was put in, and not pulled out, where the file begins with readings that all lie within putInK of each other at a temperature of
+// rooms, for no longer than putInS, and none of water's boiling follows. Such a leap is told, and nothing is doubted. Own choice.
+const (
+	putInS            = 600.0
+	putInK            = 2.0
+	roomLow, roomHigh = 10.0, 35.0 // °C
+	boils             = 100.0
+)
+
+// leaper looks for leaps among the readings that are not doubtful already.
+type leaper struct {
+	at    []int // of each reading: its place in the log
+	t, c  []float64
+	food  Food
+	resK  float64
+	spans []float64 // the times in which a leap is looked for, s, rising
+	oneS  float64   // the longest from a reading to the next
+	mostC float64   // K/s, 0: not known
+}
+
+func newLeaper(log *Log, f Food) *leaper {
+	s := &leaper{food: f, resK: log.ResolutionK}
+	for i, d := 0, 0; i < len(log.C); i++ {
+		if d < len(log.Doubtful) && log.Doubtful[d] == i {
+			d++
+			continue
+		}
+		s.at, s.t, s.c = append(s.at, i), append(s.t, log.TimesS[i]), append(s.c, log.C[i])
+	}
+	longest := unknownS
+	s.oneS = unknownOneS
+	if f.SettleS > 0 {
+		longest = math.Min(f.SettleS, leapS)
+		s.oneS = longest
+	}
+	if log.StepS > 0 {
+		for w := log.StepS; w <= longest; w *= 2 {
+			s.spans = append(s.spans, w)
+		}
+	}
+	if len(s.spans) == 0 || s.spans[len(s.spans)-1] < s.oneS {
+		s.spans = append(s.spans, math.Min(longest, s.oneS))
+	}
+	if f.ShareS > 0 && f.HighC >= f.LowC {
+		lo, hi := f.LowC, f.HighC
+		for _, c := range s.c {
+			lo, hi = math.Min(lo, c), math.Max(hi, c)
+		}
+		s.mostC = f.ShareS * (hi - lo)
+	}
+	return s
+}
+
+// leaps finds where a channel within a food leaps. It adds them to the log with what there is to say; nothing is said yet, for readings outside the
+// steps do not count.
+func (r *reader) leaps(t *taker) {
+	if r.set.Food == nil || len(r.log.C) < 3 {
+		return
+	}
+	r.log.Leaps = newLeaper(r.log, *r.set.Food).all()
+	for i := range r.log.Leaps {
+		l := &r.log.Leaps[i]
+		l.Problem = r.leapt(t, l)
+	}
+}
+
+// all are the leaps, without what there is to say.
+func (s *leaper) all() []Leap {
+	var out []Leap
+	ends := make([]int, len(s.spans)) // by span: the last reading within it
+	for i := 0; i+1 < len(s.c); {
+		base, ok := s.from(i, ends)
+		if !ok {
+			i++
+			continue
+		}
+		back, far := s.back(base)
+		l := Leap{Before: s.at[base], First: s.at[base+1], Last: s.at[back-1]}
+		if s.putIn(base, far) {
+			l.Last = l.First - 1
+			for back = base + 1; back < len(s.c)-1 && s.t[back] <= s.t[base]+unknownOneS; back++ { // until the sensor shows the food
+			}
+		}
+		out = append(out, l)
+		i = back
+	}
+	return out
+}
+
+// from looks for a leap after the reading i, and gives the last reading before it.
+func (s *leaper) from(i int, ends []int) (base int, ok bool) {
+	n, before := len(s.c), -1
+	for k, w := range s.spans {
+		for ends[k] < i || ends[k]+1 < n && s.t[ends[k]+1] <= s.t[i]+w+sameS {
+			ends[k]++
+		}
+		j := ends[k]
+		if j == i {
+			if j++; s.t[j]-s.t[i] > s.oneS+sameS {
+				continue
+			}
+		}
+		if j == before {
+			continue
+		}
+		before = j
+		if s.isLeap(i, j) {
+			return s.onset(i, j), true
+		}
+	}
+	return 0, false
+}
+
+// sameS is below what any logger's clock tells, s.
+const sameS = 1e-6
+
+// isLeap tells whether the readings leap after i, up to j.
+func (s *leaper) isLeap(i, j int) bool {
+	away, long := math.Abs(s.c[j]-s.c[i]), s.t[j]-s.t[i]
+	if away < leastJump {
+		return false
+	}
+	if s.mostC > 0 && away > twiceOver*s.mostC*long+s.resK {
+		return true
+	}
+	if away <= sharply*s.resK {
+		return false
+	}
+	quiet := away / sharply
+	open := true // what came before it, or comes after it, was not read for as long
+	for h := i - 1; h >= 0; h-- {
+		if math.Abs(s.c[h]-s.c[i]) >= quiet*math.Max(1, (s.t[i]-s.t[h])/long) {
+			return false
+		}
+		if open = s.t[i]-s.t[h] < long-sameS; s.t[i]-s.t[h] >= quietTimes*long-sameS {
+			break
+		}
+	}
+	ends := true
+	for k := j + 1; k < len(s.c); k++ {
+		if math.Abs(s.c[k]-s.c[j]) >= quiet*math.Max(1, (s.t[k]-s.t[j])/long) {
+			return false
+		}
+		if ends = s.t[k]-s.t[j] < long-sameS; s.t[k]-s.t[j] >= quietTimes*long-sameS {
+			break
+		}
+	}
+	open = open || ends
+	switch {
+	case s.food.SettleS == 0:
+		return !open || away >= lastLeap
+	case s.mostC > 0 && away > s.mostC*long+s.resK:
+		return true
+	}
+	return !open && long <= s.food.SettleS/ofSettling
+}
+
+// onset is the last reading before a leap between i and j.
+func (s *leaper) onset(i, j int) int {
+	least := math.Max(math.Abs(s.c[j]-s.c[i])/sharply, s.resK)
+	m := i + 1
+	for m < j && math.Abs(s.c[m]-s.c[i]) < least {
+		m++
+	}
+	for ; m-1 > i; m-- { // a slow sensor moves the most at first
+		if last, now := s.c[m-1]-s.c[m-2], s.c[m]-s.c[m-1]; last*now <= 0 || math.Abs(last) < math.Abs(now)/2 || math.Abs(last) <= s.resK {
+			break
+		}
+	}
+	return m - 1
+}
+
+// back finds the reading with which a leap after base has come back; the number of readings if it has not. far is the reading farthest away on its side.
+func (s *leaper) back(base int) (back int, far float64) {
+	n := len(s.c)
+	fast := math.Max(s.spans[len(s.spans)-1], s.oneS)
+	if s.food.SettleS == 0 {
+		fast = unknownOneS
+	}
+	away := 0.0 // K, with its sign
+	for m, k := base+1, base+1; k < n && s.t[k]-s.t[base] <= backS+sameS; k++ {
+		d := s.c[k] - s.c[base]
+		if k == base+1 || d*away >= 0 && math.Abs(d) > math.Abs(away) {
+			away = d
+		}
+		for s.t[k]-s.t[m] > fast {
+			m++
+		}
+		m = min(m, k-1)
+		near := math.Max(backK, math.Abs(away)/4)
+		if k == base+1 || math.Abs(d) > near || k+backLeast > n {
+			continue
+		}
+		returned := false // as fast as a leap
+		for x := m; x < k; x++ {
+			returned = returned || math.Abs(s.c[x]-s.c[k]) >= math.Abs(away)/2 && (s.c[x]-s.c[k])*away > 0
+		}
+		stays := returned
+		for x := k + 1; x < k+backLeast; x++ {
+			stays = stays && math.Abs(s.c[x]-s.c[base]) <= near
+		}
+		if stays {
+			return k, s.c[base] + away
+		}
+	}
+	return n, s.c[base] + away
+}
+
+// putIn tells whether the probe was put into the food just after base; far is where it went.
+func (s *leaper) putIn(base int, far float64) bool {
+	if s.t[base]-s.t[0] > putInS || far >= boils {
+		return false
+	}
+	lo, hi := s.c[0], s.c[0]
+	for _, c := range s.c[:base+1] {
+		lo, hi = math.Min(lo, c), math.Max(hi, c)
+	}
+	return hi-lo <= math.Max(putInK, 2*s.resK) && lo >= roomLow && hi <= roomHigh
+}
+
+// leapt words a leap.
+func (r *reader) leapt(t *taker, l *Leap) cell.Error {
+	log := r.log
+	at, typed := r.src.place(log.Lines[l.First], t.lay.temp), shownC(log.C[l.First])
+	from, long := shownC(log.C[l.Before]), spanOf(log.TimesS[l.First]-log.TimesS[l.Before])
+	if l.Last < l.First {
+		return putInto.problem(at, cell.Warning, "", typed, from, long)
+	}
+	food := "the core of a food can move unless it is thin"
+	if r.set.Food.SettleS > 0 {
+		food = "this food can move there"
+	}
+	which := "it is"
+	switch {
+	case l.Last == len(log.C)-1 && l.Last > l.First:
+		which = "it and what follows to the end are"
+	case l.Last > l.First:
+		which = "it and what follows up to " + r.row(log.Lines[l.Last]) + " are"
+	}
+	return leapt.problem(at, cell.Warning, "", typed, from, long, food, which)
+}
+
+// Doubted lists the readings from first up to before end that are doubtful, rising, counted from first on. Of a leap only those count before
+// which there is a reading from since on.
+func (l *Log) Doubted(first, end, since int) []int {
+	var out []int
+	out = append(out, l.Doubtful...)
+	for _, p := range l.Leaps {
+		if p.Before < since {
+			continue
+		}
+		for d := p.First; d <= p.Last; d++ {
+			out = append(out, d)
+		}
+	}
+	sort.Ints(out)
+	n := 0
+	for i, d := range out {
+		if d >= first && d < end && (i == 0 || d != out[i-1]) {
+			out[n] = d - first
+			n++
+		}
+	}
+	return out[:n]
+}
