@@ -297,6 +297,7 @@ func TestFiles(t *testing.T) {
 	for _, c := range []struct{ name, path, want string }{
 		{"missing", filepath.Join(dir, "none.csv"), `Records!D2: "none.csv" cannot be read: no such file or directory – check the name; it is looked for from the folder of the plan`},
 		{"folder", dir, fmt.Sprintf("Records!D2: %q is a folder; a record is one file – name the file in it", filepath.Base(dir))},
+		{"device", os.DevNull, `Records!D2: "null" is neither a file nor a folder – name a file`},
 		{"huge", huge, `Records!D2: "huge.csv" has more than 1024 MB, the most that is read – export a part of the record, or with a longer interval`},
 		{"long line", file("long.csv", "T (s),B (°C)\n1,2\n", strings.Repeat("x", mostLine+300_000), "\n2,3\n"), `Records!D2: "long.csv" has a line of more than 1 MB – export the record again, one reading a line`},
 		{"many rows", many, `Records!D2: "many.csv" has more than 3 rows, the most that is read – export a part of the record, or with a longer interval`},
@@ -307,7 +308,7 @@ func TestFiles(t *testing.T) {
 			`Records!G2: "B (°C)" is no heading with readings below that could be found, and as a letter it is beyond the last column, A – correct it`},
 	} {
 		t.Run(c.name, func(t *testing.T) {
-			if c.name == "missing" && runtime.GOOS == "windows" {
+			if (c.name == "missing" || c.name == "device") && runtime.GOOS == "windows" {
 				t.Skip("the words of the system are others")
 			}
 			most := mostRows
@@ -319,6 +320,25 @@ func TestFiles(t *testing.T) {
 				t.Errorf("got      %s\nexpected %s", got, c.want)
 			}
 		})
+	}
+}
+
+// TestVanished is a file that is taken away while it is read.
+func TestVanished(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "probe.csv")
+	if err := os.WriteFile(path, []byte("T (s),B (°C)\n1,2\n2,3\n"), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	r := &reader{set: Setting{File: path, Name: "probe.csv", Cells: places}, log: &Log{}, most: mostRows}
+	if !r.settings() || !r.file() {
+		t.Fatal(r.problems)
+	}
+	if err := os.Remove(path); err != nil {
+		t.Skip("an open file cannot be removed here: ", err)
+	}
+	r.table()
+	if got := r.problems.Error(); !strings.HasPrefix(got, `Records!D2: "probe.csv" cannot be read: `) || r.problems.Faults() != 1 {
+		t.Error(got)
 	}
 }
 

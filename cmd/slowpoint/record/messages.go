@@ -74,6 +74,8 @@ var (
 	needsDate    = saying{"holds clocks only, and column {1} holds the dates", "write both, joined by a +: {2}"}
 	needsClock   = saying{"holds dates only, and column {1} holds the clocks", "write both, joined by a +: {2}"}
 	noReadings   = saying{"{1} holds no readings{2}", "check the columns, and export the record again"}
+	oneColumn    = saying{"{1} has one column; a record has its times in one and its temperatures in another", "export both{2}"}
+	oneReading   = saying{"The line has the only reading, {1}; a course is two at least, at different times", "export the whole record: what the temperature was before and after one reading cannot be told from it"}
 	twoTables    = saying{"{1} holds more than one table: {2}, and again from {3} on", "keep one of them in the file"}
 	skippedRows  = saying{"is no reading; the line is skipped", ""}
 	eventRows    = saying{"The line marks an event and has no reading; it is skipped", ""}

@@ -210,6 +210,13 @@ func (r *reader) make(t *taker) {
 	if !t.instants() || !t.rising() || l.scale == nil {
 		return
 	}
+	if len(t.secs) == 1 {
+		if r.tells.faults() > 0 { // the others are wrong
+			return
+		}
+		t.tell(oneReading, t.lines[0], l.temp, "", fmt.Sprintf("%g %s", t.cs[0], l.scale.name))
+		return
+	}
 	log.SHA256 = r.src.digest()
 	log.TimeHead, log.Head, log.Unit = l.heading(l.time), strings.TrimSpace(l.group+" "+l.heading(l.temp)), l.scale.name
 	if l.clock > 0 {
