@@ -38,7 +38,7 @@ var (
 	noRegular = saying{"is neither a file nor a folder", "name a file"}
 	emptyFile = saying{"is empty", "export the record again"}
 	tooBig    = saying{"has more than {1} MB, the most that is read", "export a part of the record, or with a longer interval"}
-	tooMany   = saying{"has more than {1} rows, the most that is read", "export a part of the record, or with a longer interval"}
+	tooMany   = saying{"has more than {1} readings, the most that one record may have{2}", "export it with a longer interval, such as a reading every 10 seconds, or divide it into several files"}
 	notText   = saying{"is {1}, and neither delimited text in a known writing nor an .xlsx workbook", "export the record as CSV or .xlsx"}
 	badBook   = saying{"cannot be read: {1}", ""}
 	zeroBytes = saying{"The line holds zero bytes, so a part of the record is lost or it is UTF-16 without a mark", "export the record again, as CSV UTF-8"}
