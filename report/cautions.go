@@ -299,24 +299,24 @@ func sparse(h *Head, p *Product) ([]any, bool) {
 	for _, sp := range p.History.Spans {
 		bounds[sp.StartS], bounds[sp.EndS] = true, true
 	}
-	var read []float64
-	for _, t := range p.History.Scan().TimesS {
-		if !bounds[t] {
-			read = append(read, t)
-		}
-	}
-	gap := widestGap(p.History.Scan().TimesS)
-	if cut := widestGap(read); cut > 600 { // a reading at a change of step is taken out as well: two intervals of five minutes
+	gap := widestGap(p.History.Scan().TimesS, nil)
+	if cut := widestGap(p.History.Scan().TimesS, bounds); cut > 600 { // a reading at a change of step is taken out as well: two intervals of five minutes
 		gap = max(gap, cut)
 	}
 	return []any{duration(gap, up)}, gap > 300
 }
 
-// widestGap is the longest way from one time to the next, s.
-func widestGap(t []float64) float64 {
-	gap := 0.0
-	for i := 1; i < len(t); i++ {
-		gap = max(gap, t[i]-t[i-1])
+// widestGap is the longest way from one time to the next, s, without those in out.
+func widestGap(times []float64, out map[float64]bool) float64 {
+	gap, before := 0.0, math.NaN()
+	for _, t := range times {
+		if out[t] {
+			continue
+		}
+		if t-before > gap {
+			gap = t - before
+		}
+		before = t
 	}
 	return gap
 }

@@ -133,7 +133,7 @@ func newLayer(r *model.Recording, without []int) *layer {
 		b.gaps[g] = true
 	}
 	b.air = newSurroundings(r)
-	u.t, u.c = make([]float64, 0, min(n, 1<<20)+len(b.ends)), make([]float64, 0, min(n, 1<<20)+len(b.ends))
+	u.t, u.c = make([]float64, 0, n+len(b.ends)), make([]float64, 0, n+len(b.ends))
 	return b
 }
 
@@ -428,6 +428,9 @@ func (s *surroundings) bounds(r *model.Recording, u *tube, i, k int, iv interval
 
 // course writes the course of a way through the tube into buf, with the gaps for which open says no as straight lines.
 func (u *tube) course(buf *path, w way, open func(gap int) bool) path {
+	if most := 2 * len(u.t); cap(buf.t) < most { // a knot at each reading, and one where the course leaves it
+		buf.t, buf.c = make([]float64, 0, most), make([]float64, 0, most)
+	}
 	t, c := buf.t[:0], buf.c[:0]
 	keep := -1 // the last knot that may not be left out
 	emit := func(x, y float64) {

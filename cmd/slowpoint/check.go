@@ -370,7 +370,7 @@ type runner struct {
 	advice   []string               // by row: the advice that is not met, a line each
 	logs     *logs                  // the files of records; nil: they are left alone
 	fit      fitting                // what is fitted to records
-	alone    *workbook.Record       // the record that is judged in the place of a prediction; nil: the plan is calculated
+	alone    *report.Product        // the product that a record was judged as, in the place of a prediction; nil: the plan is calculated
 	names    map[string]string      // by product: the file name of its report, without its ending
 	refused  []report.NotCalculated // found while calculating
 	corners  map[cell.Ref]corner    // by row of Limits: where to judge what varies, once it was found; nil: it is looked for

@@ -187,10 +187,14 @@ func judgeAlone(cmd *cobra.Command, plan *workbook.Plan, rec *workbook.Record, p
 	for _, k := range known() {
 		head.Known = append(head.Known, k.KnownAnswer)
 	}
+	r := &runner{shelf: files, plan: plan, head: head, logs: l, folder: o.out, options: o, names: filesOf(plan), progress: progress(cmd.ErrOrStderr(), 0)}
+	if r.alone, problems = r.judgedAlone(rec, &plan.Products[0]); r.alone == nil {
+		tellProblems(cmd.ErrOrStderr(), problems)
+		return &failure{exitInput, errors.New("the record could not be judged")}
+	}
 	if err := files.makeFolder(o.out); err != nil {
 		return &failure{exitFault, err}
 	}
-	r := &runner{shelf: files, plan: plan, head: head, logs: l, alone: rec, folder: o.out, options: o, names: filesOf(plan), progress: progress(cmd.ErrOrStderr(), 0)}
 	if err := r.all(); err != nil {
 		return &failure{exitFault, err}
 	}
@@ -243,14 +247,14 @@ func aboutLimits(plan *workbook.Plan) cell.Errors {
 	return out
 }
 
-// judgedAlone is a record as a product of its own.
-func (r *runner) judgedAlone(p *workbook.Product) (*report.Product, error) {
-	m := r.measured(r.alone, p, nil, nil)
+// judgedAlone is a record as a product of its own; nil with the reasons where it cannot be judged.
+func (r *runner) judgedAlone(rec *workbook.Record, p *workbook.Product) (*report.Product, cell.Errors) {
+	m := r.measured(rec, p, nil, nil)
 	if m.History == nil {
 		return nil, m.Problems
 	}
 	out := &report.Product{Product: p.Product, Steps: p.Steps, Family: p.Family, RecipeVersion: p.RecipeVersion, Batch: p.Batch, Process: p.Process,
-		Note: p.Note, History: m.History, Judgement: m.Judgement, Readings: r.alone.Readings()}
+		Note: p.Note, History: m.History, Judgement: m.Judgement, Readings: rec.Readings()}
 	for i := range out.Readings {
 		if f := flagOf(out.Readings[i].Column); f != "" {
 			out.Readings[i].At = cell.Ref{Sheet: "--" + f}

@@ -293,13 +293,18 @@ func TestFiles(t *testing.T) {
 	if err := os.Truncate(huge, mostText+1); err != nil {
 		t.Fatal(err)
 	}
-	many := file("many.csv", "T (s),B (°C)\n1,2\n2,3\n3,4\n4,5\n")
+	var rows strings.Builder
+	for i := range 5000 {
+		fmt.Fprintf(&rows, "%04d,%d\n", i, i%10)
+	}
+	many := file("many.csv", "T (s),B (°C)\n", rows.String())
 	for _, c := range []struct{ name, path, want string }{
 		{"missing", filepath.Join(dir, "none.csv"), `Records!D2: "none.csv" cannot be read: no such file or directory – check the name; it is looked for from the folder of the plan`},
 		{"folder", dir, fmt.Sprintf("Records!D2: %q is a folder; a record is one file – name the file in it", filepath.Base(dir))},
+		{"device", os.DevNull, `Records!D2: "null" is neither a file nor a folder – name a file`},
 		{"huge", huge, `Records!D2: "huge.csv" has more than 1024 MB, the most that is read – export a part of the record, or with a longer interval`},
 		{"long line", file("long.csv", "T (s),B (°C)\n1,2\n", strings.Repeat("x", mostLine+300_000), "\n2,3\n"), `Records!D2: "long.csv" has a line of more than 1 MB – export the record again, one reading a line`},
-		{"many rows", many, `Records!D2: "many.csv" has more than 3 rows, the most that is read – export a part of the record, or with a longer interval`},
+		{"many rows", many, `Records!D2: "many.csv" has more than 1000 readings, the most that one record may have; by its size it has about 5000 – export it with a longer interval, such as a reading every 10 seconds, or divide it into several files`},
 		{"zeros at the end", file("zeros.csv", "T (s),B (°C)\n1,2\n2,3\n", strings.Repeat("\x00", 3<<20)), "zeros.csv line 4: The file ends in zero bytes, which are ignored"},
 		{"zeros inside", file("lost.csv", "T (s),B (°C)\n1,2\n2,3\n", strings.Repeat("\x00", 3<<20), "3,4\n"), "lost.csv line 4: The line holds zero bytes, so a part of the record is lost or it is UTF-16 without a mark – export the record again, as CSV UTF-8"},
 		{"blanks only", file("blank.csv", "\n \n\n"), `Records!D2: "blank.csv" is empty – export the record again`},
@@ -307,18 +312,46 @@ func TestFiles(t *testing.T) {
 			`Records!G2: "B (°C)" is no heading with readings below that could be found, and as a letter it is beyond the last column, A – correct it`},
 	} {
 		t.Run(c.name, func(t *testing.T) {
-			if c.name == "missing" && runtime.GOOS == "windows" {
+			if (c.name == "missing" || c.name == "device") && runtime.GOOS == "windows" {
 				t.Skip("the words of the system are others")
 			}
 			most := mostRows
 			if c.name == "many rows" {
-				most = 3
+				most = 1000
 			}
 			_, problems := read(Setting{File: c.path, Time: "T", Temperature: "B (°C)", Cells: places}, most)
 			if got := problems.Error(); got != c.want {
 				t.Errorf("got      %s\nexpected %s", got, c.want)
 			}
 		})
+	}
+}
+
+// TestRounded holds counts in messages to two digits.
+func TestRounded(t *testing.T) {
+	for n, want := range map[int]string{0: "0", 7: "7", 99: "99", 104: "100", 2_000_000: "2 million", 10_040_000: "10 million", 1_949_999: "1.9 million", 999_999: "1 million"} {
+		if got := rounded(n); got != want {
+			t.Errorf("%d: %s, expected %s", n, got, want)
+		}
+	}
+}
+
+// TestVanished is a file that is taken away while it is read.
+func TestVanished(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "probe.csv")
+	if err := os.WriteFile(path, []byte("T (s),B (°C)\n1,2\n2,3\n"), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	r := &reader{set: Setting{File: path, Name: "probe.csv", Cells: places}, log: &Log{}, most: mostRows}
+	if !r.settings() || !r.file() {
+		t.Fatal(r.problems)
+	}
+	if err := os.Remove(path); err != nil {
+		t.Skip("an open file cannot be removed here: ", err)
+	}
+	r.table()
+	if got := r.problems.Error(); !strings.HasPrefix(got, `Records!D2: "probe.csv" cannot be read: `) || r.problems.Faults() != 1 {
+		t.Error(got)
 	}
 }
 

@@ -191,7 +191,7 @@ func (r *reader) layOut(head []kept) *layout {
 	l := &layout{}
 	if at < 0 && (len(times) == 0 || temp.typed == "") {
 		if at = guessHeadings(head); at < 0 {
-			r.problems.Add(noHeadings.problem(r.set.Cells[setTime], cell.Fault, setTime, "", r.src.holder()))
+			r.noTable(head)
 			return nil
 		}
 	}
@@ -342,7 +342,7 @@ func (r *reader) unknownHeading(head []kept, all []want) {
 		at = best
 	}
 	if at < 0 {
-		r.problems.Add(noHeadings.problem(r.set.Cells[setTime], cell.Fault, setTime, "", r.src.holder()))
+		r.noTable(head)
 		return
 	}
 	for _, w := range all {
@@ -351,6 +351,49 @@ func (r *reader) unknownHeading(head []kept, all []want) {
 			r.problems.Add(noHeading.problem(r.set.Cells[w.setting], cell.Fault, w.setting, w.typed, r.src.holder(), there))
 		}
 	}
+}
+
+// noTable tells why no headings with readings below were found.
+func (r *reader) noTable(head []kept) {
+	names := lastHeadings(head)
+	switch {
+	case narrow(head):
+		signs := ""
+		if _, isText := r.src.(*text); isText {
+			signs = "; between the two stands a comma, a semicolon, a tab, a | or a blank, the same in every line"
+		}
+		r.problems.Add(oneColumn.problem(r.set.Cells[setFile], cell.Fault, setFile, "", r.src.holder(), signs))
+	case names >= 0:
+		r.problems.Add(noReadings.problem(r.set.Cells[setFile], cell.Fault, setFile, "", r.src.holder(), r.underHeadings(&layout{heads: head[names].n})))
+	default:
+		r.problems.Add(noHeadings.problem(r.set.Cells[setTime], cell.Fault, setTime, "", r.src.holder()))
+	}
+}
+
+// narrow tells whether rows have one cell, and none has more.
+func narrow(head []kept) bool {
+	widest := 0
+	for i := range head {
+		widest = max(widest, head[i].last())
+	}
+	return widest == 1
+}
+
+// lastHeadings is the row of names with which a file ends, a row of units below it perhaps; -1 if it does not.
+func lastHeadings(head []kept) int {
+	if len(head) == headRows { // it goes on
+		return -1
+	}
+	for i := len(head) - 1; i >= 0; i-- {
+		if onlyUnits(&head[i]) { // or blank
+			continue
+		}
+		if wordy(&head[i]) {
+			return i
+		}
+		break
+	}
+	return -1
 }
 
 // named lists headings with their letters; cols nil means all.

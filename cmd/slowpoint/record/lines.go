@@ -15,11 +15,11 @@ import (
 
 // Limits on size, stated in the messages.
 const (
-	mostText   = 1 << 30    // bytes of a text file
-	mostRows   = 10_000_000 // rows of a record
-	mostLine   = 1 << 20    // bytes of a line
-	mostFields = 512        // cells of a line
-	mostJoined = 20         // lines of a cell in quotation marks
+	mostText   = 1 << 30   // bytes of a text file
+	mostRows   = 2_000_000 // rows of a record: 23 days of one a second; so many take 300 MB when they are judged
+	mostLine   = 1 << 20   // bytes of a line
+	mostFields = 512       // cells of a line
+	mostJoined = 20        // lines of a cell in quotation marks
 )
 
 var (

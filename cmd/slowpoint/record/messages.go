@@ -38,7 +38,7 @@ var (
 	noRegular = saying{"is neither a file nor a folder", "name a file"}
 	emptyFile = saying{"is empty", "export the record again"}
 	tooBig    = saying{"has more than {1} MB, the most that is read", "export a part of the record, or with a longer interval"}
-	tooMany   = saying{"has more than {1} rows, the most that is read", "export a part of the record, or with a longer interval"}
+	tooMany   = saying{"has more than {1} readings, the most that one record may have{2}", "export it with a longer interval, such as a reading every 10 seconds, or divide it into several files"}
 	notText   = saying{"is {1}, and neither delimited text in a known writing nor an .xlsx workbook", "export the record as CSV or .xlsx"}
 	badBook   = saying{"cannot be read: {1}", ""}
 	zeroBytes = saying{"The line holds zero bytes, so a part of the record is lost or it is UTF-16 without a mark", "export the record again, as CSV UTF-8"}
@@ -74,6 +74,8 @@ var (
 	needsDate    = saying{"holds clocks only, and column {1} holds the dates", "write both, joined by a +: {2}"}
 	needsClock   = saying{"holds dates only, and column {1} holds the clocks", "write both, joined by a +: {2}"}
 	noReadings   = saying{"{1} holds no readings{2}", "check the columns, and export the record again"}
+	oneColumn    = saying{"{1} has one column; a record has its times in one and its temperatures in another", "export both{2}"}
+	oneReading   = saying{"The line has the only reading, {1}; a course is two at least, at different times", "export the whole record: what the temperature was before and after one reading cannot be told from it"}
 	twoTables    = saying{"{1} holds more than one table: {2}, and again from {3} on", "keep one of them in the file"}
 	skippedRows  = saying{"is no reading; the line is skipped", ""}
 	eventRows    = saying{"The line marks an event and has no reading; it is skipped", ""}

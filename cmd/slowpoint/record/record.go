@@ -151,6 +151,9 @@ func (r *reader) table() {
 	}
 	r.widest(l, head)
 	t := &taker{r: r, lay: l, places: math.MaxInt8}
+	if f, isText := r.src.(*text); isText && len(head) == headRows {
+		t.reserve(min(int(1.02*headRows*f.times()), r.most))
+	}
 	if err := r.src.each(t.take); err != nil {
 		r.broken(err)
 		return
@@ -169,10 +172,32 @@ func (r *reader) broken(err error) {
 	case errLong:
 		r.problems.Add(longLine.problem(at, cell.Fault, setFile, r.set.Name))
 	case errMany:
-		r.problems.Add(tooMany.problem(at, cell.Fault, setFile, r.set.Name, fmt.Sprint(r.most)))
+		r.problems.Add(tooMany.problem(at, cell.Fault, setFile, r.set.Name, rounded(r.most), r.bySize()))
 	default:
 		r.problems.Add(noFile.problem(at, cell.Fault, setFile, r.set.Name, workbook.Reason(err)))
 	}
+}
+
+// bySize says how many readings a text has in all, by its size and by what was read of it; "" where that is not known.
+func (r *reader) bySize() string {
+	f, isText := r.src.(*text)
+	if !isText {
+		return ""
+	}
+	return "; by its size it has about " + rounded(int(float64(r.most)*f.times()))
+}
+
+// rounded gives a count to two digits, in millions where it has some.
+func rounded(n int) string {
+	unit := 1
+	for n >= 100*unit {
+		unit *= 10
+	}
+	n = (n + unit/2) / unit * unit
+	if n < 1_000_000 {
+		return fmt.Sprint(n)
+	}
+	return fmt.Sprintf("%g million", float64(n)/1e6)
 }
 
 // row names a row of the file: "line 48", "row 48".
@@ -210,6 +235,13 @@ func (r *reader) make(t *taker) {
 		return
 	}
 	if !t.instants() || !t.rising() || l.scale == nil {
+		return
+	}
+	if len(t.secs) == 1 {
+		if r.tells.faults() > 0 { // the others are wrong
+			return
+		}
+		t.tell(oneReading, t.lines[0], l.temp, "", fmt.Sprintf("%g %s", t.cs[0], l.scale.name))
 		return
 	}
 	log.SHA256 = r.src.digest()

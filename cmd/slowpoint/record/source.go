@@ -32,6 +32,16 @@ type text struct {
 	sum        hash.Hash
 	zeros      bool // it ends in zero bytes
 	lines      int32
+	size       int64 // bytes
+	read       int64 // bytes of the lines that were given
+}
+
+// times is by how much the file is larger than what was read of it.
+func (t *text) times() float64 {
+	if t.read == 0 {
+		return 1
+	}
+	return max(float64(t.size)/float64(t.read), 1)
 }
 
 func (t *text) word() string   { return "line" }
@@ -60,7 +70,7 @@ func (t *text) each(take func(*row) error) error {
 	l := newLineReader(in, t.eol)
 	d := divider{sign: t.sign}
 	r := row{}
-	t.lines, t.zeros = 0, false
+	t.lines, t.zeros, t.read = 0, false, 0
 	for {
 		line, err := l.next()
 		if err == io.EOF {
@@ -70,7 +80,7 @@ func (t *text) each(take func(*row) error) error {
 		if err != nil {
 			return err
 		}
-		t.lines++
+		t.took(line)
 		if t.lines == 1 {
 			line = bytes.TrimPrefix(line, []byte("\xef\xbb\xbf"))
 		}
@@ -95,6 +105,15 @@ func (t *text) each(take func(*row) error) error {
 	}
 }
 
+// took counts a line.
+func (t *text) took(line []byte) {
+	n := len(line) + 1
+	if t.wide {
+		n *= 2
+	}
+	t.lines, t.read = t.lines+1, t.read+int64(n)
+}
+
 // join reads on in a cell in quotation marks that goes over several lines.
 func (t *text) join(l *lineReader, d *divider, r *row, line []byte) error {
 	whole := bytes.Clone(line)
@@ -106,7 +125,7 @@ func (t *text) join(l *lineReader, d *divider, r *row, line []byte) error {
 		if err != nil {
 			return err
 		}
-		t.lines++
+		t.took(next)
 		whole = append(append(whole, '\n'), next...)
 		open := false
 		if r.fields, open, r.quotes = d.divide(whole); !open {
@@ -118,8 +137,8 @@ func (t *text) join(l *lineReader, d *divider, r *row, line []byte) error {
 }
 
 // openText finds how a text is written, by its beginning.
-func openText(path, name string, head []byte) *text {
-	t := &text{path: path, name: name, eol: '\n'}
+func openText(path, name string, size int64, head []byte) *text {
+	t := &text{path: path, name: name, eol: '\n', size: size}
 	if bytes.HasPrefix(head, []byte("\xff\xfe")) || bytes.HasPrefix(head, []byte("\xfe\xff")) {
 		t.wide = true
 		head, _ = io.ReadAll(fromUTF16(bytes.NewReader(head[:len(head)&^1])))
@@ -214,7 +233,7 @@ func (r *reader) open() (source, bool) {
 	if what := binary(head); what != "" {
 		return refuse(notText, what)
 	}
-	return openText(r.set.File, r.set.Name, head), true
+	return openText(r.set.File, r.set.Name, info.Size(), head), true
 }
 
 func beginning(path string) ([]byte, error) {

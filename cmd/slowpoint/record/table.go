@@ -99,6 +99,12 @@ type pendingRow struct {
 
 const mostPending = 50
 
+// reserve makes room for a number of readings, so that a long record is not moved while it grows.
+func (t *taker) reserve(n int) {
+	t.secs, t.cs = make([]float64, 0, n), make([]float64, 0, n)
+	t.lines, t.dates = make([]int32, 0, n), make([]int32, 0, n)
+}
+
 // take reads one row.
 func (t *taker) take(r *row) error {
 	if r.n < t.lay.first || t.ended {

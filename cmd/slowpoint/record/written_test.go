@@ -46,7 +46,7 @@ func TestWrittenLogsReadBack(t *testing.T) {
 		comma := sign != "," && w.form != "Jan 2, 2006 15:04:05" && rapid.Bool().Draw(t, "decimal comma")
 		places := rapid.IntRange(0, 3).Draw(t, "places")
 		scale := rapid.SampledFrom(scales).Draw(t, "unit")
-		n := rapid.IntRange(1, 40).Draw(t, "readings")
+		n := rapid.IntRange(2, 40).Draw(t, "readings")
 		at := time.Date(2026, 1, 1, 0, 0, 0, 0, time.UTC).Add(time.Duration(rapid.IntRange(0, 500*24*60).Draw(t, "start")) * time.Minute)
 		offset := 0
 		if strings.HasSuffix(w.form, "-07:00") {

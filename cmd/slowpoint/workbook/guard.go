@@ -153,6 +153,7 @@ func (t *tagged) Read(p []byte) (int, error) {
 // elements too.
 type walker struct {
 	*xml.Decoder
+	feed   *feed
 	m      *meter
 	deep   int  // elements that are open
 	pieces bool // the token before was no element's begin or end
@@ -190,6 +191,9 @@ func (w *walker) Token() (xml.Token, error) {
 	return t, nil
 }
 
+// between tells whether the decoder has taken no byte beyond the token that it gave last.
+func (w *walker) between() bool { return w.feed.given == w.InputOffset() }
+
 // Skip reads up to the end of the element that was just opened.
 func (w *walker) Skip() error {
 	for end := w.deep - 1; w.deep > end; {
@@ -207,8 +211,9 @@ func wellFormed(r metered) error {
 
 // elements walks through XML: start is called for each element, end (which may be nil) for each end. Declarations are refused:
 // no workbook needs them, and they can make a small file expand without end.
-func elements(r metered, start func(*walker, xml.StartElement) error, end func(name string)) error {
-	d := &walker{Decoder: xml.NewDecoder(&tagged{r: r}), m: r.m}
+func elements(r metered, start func(*walker, xml.StartElement) error, end func(d *walker, name string) error) error {
+	f := newFeed(&tagged{r: r})
+	d := &walker{Decoder: xml.NewDecoder(f), feed: f, m: r.m}
 	for any := false; ; {
 		t, err := d.Token()
 		switch {
@@ -228,8 +233,11 @@ func elements(r metered, start func(*walker, xml.StartElement) error, end func(n
 				return err
 			}
 		case xml.EndElement:
-			if end != nil {
-				end(t.Name.Local)
+			if end == nil {
+				continue
+			}
+			if err := end(d, t.Name.Local); err != nil {
+				return err
 			}
 		}
 	}

@@ -371,13 +371,14 @@ func (b *book) readStyles(r metered) error {
 			}
 		}
 		return nil
-	}, func(name string) {
+	}, func(_ *walker, name string) error {
 		switch name {
 		case "fonts":
 			inFonts = false
 		case "cellXfs":
 			inCells = false
 		}
+		return nil
 	})
 }
 
@@ -490,103 +491,185 @@ func formOf(code string) Form {
 
 // sheet reads the cells of one sheet. left is how many cells and empty rows the plan may still have.
 func (b *book) sheet(r metered, g *Grid, left *int) error {
-	row := Row{}
-	col, filled := 0, 0
-	flush := func() error {
-		cells := row.Cells
-		switch {
-		case len(cells) == 0:
-		case g.take != nil:
-			if err := g.take(&row); err != nil {
-				return err
-			}
-			cells = cells[:0]
-		default:
-			g.Rows = append(g.Rows, row)
-			cells = nil
-		}
-		row = Row{N: row.N, Cells: cells}
-		return nil
+	s := &sheetReader{b: b, g: g, left: left}
+	if err := elements(r, s.element, s.end); err != nil {
+		return err
 	}
-	rooted := false
-	err := elements(r, func(d *walker, e xml.StartElement) error {
-		if !rooted && e.Name.Local != "worksheet" {
-			return errors.New("it is not a sheet")
+	return s.flush()
+}
+
+// A sheetReader takes the rows and cells of a sheet as they come.
+type sheetReader struct {
+	b      *book
+	g      *Grid
+	left   *int // cells and empty rows that the plan may still have
+	row    Row
+	col    int  // the last one of the row
+	filled int  // rows with something in them
+	rooted bool // the element around all was seen
+	plain  []plainCell
+}
+
+// element reads what an element begins.
+func (s *sheetReader) element(d *walker, e xml.StartElement) error {
+	if !s.rooted && e.Name.Local != "worksheet" {
+		return errors.New("it is not a sheet")
+	}
+	s.rooted = true
+	g := s.g
+	switch e.Name.Local {
+	case "sheetData":
+		return s.plainRows(d)
+	case "row":
+		d.m.spare++
+		return s.begin(rowTag{attr(e, "r"), attr(e, "hidden"), attr(e, "ht")})
+	case "c":
+		at := cellTag{attr(e, "r"), attr(e, "s")}
+		if err := s.next(at.name); err != nil {
+			return err
 		}
-		rooted = true
-		switch e.Name.Local {
-		case "row":
-			if row.N > 0 && col == 0 { // an empty row takes as long as a cell
-				if *left--; *left < 0 {
-					return errTooMany
-				}
-			}
-			d.m.spare++
-			if err := flush(); err != nil {
-				return err
-			}
-			next, err := startRow(e, row.N)
-			if err != nil {
-				return err
-			}
-			next.Cells = row.Cells
-			row, col = next, 0
-		case "c":
-			if row.N == 0 {
-				return errors.New("a cell stands outside the rows")
-			}
-			n, err := column(attr(e, "r"), row.N, col)
-			if err != nil {
-				return err
-			}
-			col = n
-			if *left--; *left < 0 {
-				return errTooMany
-			}
-			d.m.spare += inCell
-			c, err := b.cell(d, e)
-			if err != nil {
-				return err
-			}
-			if c.Kind == Blank {
-				return nil
-			}
-			if len(row.Cells) == 0 {
-				if filled++; filled > mostRows+1000 && g.take == nil {
-					g.Refused, g.Mend = fill(tooManyRows.msg, []string{strconv.Itoa(mostRows)}), tooManyRows.hint
-				}
-				if cap(row.Cells) == 0 {
-					row.Cells = make([]Entry, 0, 12)
-				}
-			}
-			c.Col = int32(col)
-			if g.Refused == "" {
-				row.Cells = append(row.Cells, c)
-			}
-		case "sheetProtection":
-			g.Protected = isTrue(attr(e, "sheet"))
-		case "mergeCell":
-			if len(g.Merged) == mostMerged {
-				return errMerged
-			}
-			if m, ok := parseBlock(attr(e, "ref")); ok {
-				g.Merged = append(g.Merged, m)
-			}
-		case "col":
-			if isTrue(attr(e, "hidden")) || smaller(attr(e, "width"), leastWidth) {
-				from, _ := strconv.Atoi(attr(e, "min"))
-				to, _ := strconv.Atoi(attr(e, "max"))
-				for i := max(from, 1); i <= min(to, mostColumns); i++ {
-					g.HiddenCols[i] = true
-				}
+		d.m.spare += inCell
+		in, err := readCell(d)
+		if err != nil {
+			return err
+		}
+		in.kind = attr(e, "t")
+		return s.cell(at, in)
+	case "sheetProtection":
+		g.Protected = isTrue(attr(e, "sheet"))
+	case "mergeCell":
+		if len(g.Merged) == mostMerged {
+			return errMerged
+		}
+		if m, ok := parseBlock(attr(e, "ref")); ok {
+			g.Merged = append(g.Merged, m)
+		}
+	case "col":
+		if isTrue(attr(e, "hidden")) || smaller(attr(e, "width"), leastWidth) {
+			from, _ := strconv.Atoi(attr(e, "min"))
+			to, _ := strconv.Atoi(attr(e, "max"))
+			for i := max(from, 1); i <= min(to, mostColumns); i++ {
+				g.HiddenCols[i] = true
 			}
 		}
-		return nil
-	}, nil)
+	}
+	return nil
+}
+
+// end goes on behind a row.
+func (s *sheetReader) end(d *walker, name string) error {
+	if name == "row" {
+		return s.plainRows(d)
+	}
+	return nil
+}
+
+// plainRows takes the rows that come next, up to one that is not plain.
+func (s *sheetReader) plainRows(d *walker) error {
+	for s.g.take != nil && d.between() {
+		text := d.feed.row()
+		if text == "" {
+			return nil
+		}
+		row, cells, ok := plainRow(text, s.plain)
+		if s.plain = cells; !ok {
+			return nil
+		}
+		d.feed.from += len(text)
+		if err := s.begin(row); err != nil {
+			return err
+		}
+		for i := range cells {
+			c := &cells[i]
+			d.m.spare += inCell - 1 - c.elements
+			if err := s.next(c.name); err != nil {
+				return err
+			}
+			if err := s.cell(c.cellTag, c.stored); err != nil {
+				return err
+			}
+		}
+	}
+	return nil
+}
+
+// flush hands on the row that was read.
+func (s *sheetReader) flush() error {
+	cells := s.row.Cells
+	switch {
+	case len(cells) == 0:
+	case s.g.take != nil:
+		if err := s.g.take(&s.row); err != nil {
+			return err
+		}
+		cells = cells[:0]
+	default:
+		s.g.Rows = append(s.g.Rows, s.row)
+		cells = nil
+	}
+	s.row = Row{N: s.row.N, Cells: cells}
+	return nil
+}
+
+// begin begins a row.
+func (s *sheetReader) begin(t rowTag) error {
+	if s.row.N > 0 && s.col == 0 { // an empty row takes as long as a cell
+		if *s.left--; *s.left < 0 {
+			return errTooMany
+		}
+	}
+	if err := s.flush(); err != nil {
+		return err
+	}
+	next, err := startRow(t, s.row.N)
 	if err != nil {
 		return err
 	}
-	return flush()
+	next.Cells = s.row.Cells
+	s.row, s.col = next, 0
+	return nil
+}
+
+// next goes to the column of a cell.
+func (s *sheetReader) next(name string) error {
+	if s.row.N == 0 {
+		return errors.New("a cell stands outside the rows")
+	}
+	n, err := column(name, s.row.N, s.col)
+	if err != nil {
+		return err
+	}
+	s.col = n
+	if *s.left--; *s.left < 0 {
+		return errTooMany
+	}
+	return nil
+}
+
+// cell keeps what a cell holds.
+func (s *sheetReader) cell(at cellTag, in stored) error {
+	c, err := s.b.meaning(in, at.style)
+	switch {
+	case err != nil:
+		return fmt.Errorf("the cell %s %w", at.name, err)
+	case tooLong(c.Text, mostText):
+		return fmt.Errorf("the cell %s holds more than %d characters", at.name, mostText)
+	case c.Kind == Blank:
+		return nil
+	}
+	if len(s.row.Cells) == 0 {
+		if s.filled++; s.filled > mostRows+1000 && s.g.take == nil {
+			s.g.Refused, s.g.Mend = fill(tooManyRows.msg, []string{strconv.Itoa(mostRows)}), tooManyRows.hint
+		}
+		if cap(s.row.Cells) == 0 {
+			s.row.Cells = make([]Entry, 0, 12)
+		}
+	}
+	c.Col = int32(s.col)
+	if s.g.Refused == "" {
+		s.row.Cells = append(s.row.Cells, c)
+	}
+	return nil
 }
 
 // What is lower or narrower is a line at most, and nobody sees what is in it.
@@ -604,9 +687,9 @@ func smaller(size string, least float64) bool {
 func isTrue(v string) bool { return v == "1" || v == "true" }
 
 // startRow reads what a row says of itself, after the row before.
-func startRow(e xml.StartElement, before int) (Row, error) {
+func startRow(t rowTag, before int) (Row, error) {
 	n := before + 1
-	if a := attr(e, "r"); a != "" {
+	if a := t.number; a != "" {
 		v, err := strconv.Atoi(a)
 		if err != nil {
 			return Row{}, fmt.Errorf("%q is not a row number", a)
@@ -619,7 +702,7 @@ func startRow(e xml.StartElement, before int) (Row, error) {
 	if n > LastRow {
 		return Row{}, fmt.Errorf("row %d does not exist in a spreadsheet", n)
 	}
-	hidden := isTrue(attr(e, "hidden")) || smaller(attr(e, "ht"), leastHeight)
+	hidden := isTrue(t.hidden) || smaller(t.height, leastHeight)
 	return Row{N: n, Hidden: hidden}, nil
 }
 
@@ -669,13 +752,12 @@ type stored struct {
 	linked, raised        bool
 }
 
-// cell reads one cell up to its end.
-func (b *book) cell(d *walker, e xml.StartElement) (Entry, error) {
-	in := stored{kind: attr(e, "t")}
+// readCell reads one cell up to its end.
+func readCell(d *walker) (in stored, err error) {
 	for depth := 1; depth > 0; {
 		t, err := d.Token()
 		if err != nil {
-			return Entry{}, midway(err)
+			return in, midway(err)
 		}
 		switch t := t.(type) {
 		case xml.StartElement:
@@ -695,20 +777,13 @@ func (b *book) cell(d *walker, e xml.StartElement) (Entry, error) {
 				depth++
 			}
 			if err != nil {
-				return Entry{}, midway(err)
+				return in, midway(err)
 			}
 		case xml.EndElement:
 			depth--
 		}
 	}
-	c, err := b.meaning(in, attr(e, "s"))
-	switch {
-	case err != nil:
-		return c, fmt.Errorf("the cell %s %w", attr(e, "r"), err)
-	case tooLong(c.Text, mostText):
-		return c, fmt.Errorf("the cell %s holds more than %d characters", attr(e, "r"), mostText)
-	}
-	return c, nil
+	return in, nil
 }
 
 // meaning makes an entry of what a cell holds; style is the number of its cell style.
