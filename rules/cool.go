@@ -142,7 +142,11 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 	switch {
 	case end > w.stageTo+sameS:
 		o.word, o.margin = "cool stage later", math.Min(o.margin, w.stageTo-end)
-		v.afterStage(&o, q, w, end, 1, t)
+		up := 1
+		if cold.holds(q.value(w.stageTo)) {
+			o.word, up = "cool stage again", -1
+		}
+		v.afterStage(&o, q, w, end, up, t)
 	case l.within(took, *l.TimeS):
 		o.verdict = Met
 	}

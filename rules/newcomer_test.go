@@ -143,6 +143,8 @@ func TestStageThatEndsFirst(t *testing.T) {
 	}{
 		{"down in the store", "cook 0-60, cool 60-160, store 160-400", "0:5 60:70 70:60 160:10 260:5 400:4", cool,
 			[]string{"still at 10 °C when the stage cool ended", "down to 5 °C only 190 min from 60 °C", "as cool + store."}, -100},
+		{"down, and up again in the store", "cook 0-60, cool 60-160, store 160-400", "0:5 60:70 70:60 160:4 200:7 260:5 400:4", cool,
+			[]string{"was at 4 °C when the stage cool ended, but rose above 5 °C again", "for good only 190 min from 60 °C", "as cool + store."}, -100},
 		{"never down", "cook 0-60, cool 60-160, store 160-260", "0:5 60:70 70:60 160:10 260:6", cool,
 			[]string{"was at 10 °C when the stage cool ended", "not down to 5 °C for good later either"}, -100},
 		{"hot while standing", "reheat 0-60, rest 60-100", "0:5 60:60 80:70 100:65", heat,

@@ -77,6 +77,7 @@ var words = map[string]string{
 	"cool cut":          "{who} was {still} above {to} when the next heating began, {value} from {start}, and {time} is allowed, so it cannot be told.",
 	"cool stage":        "{who} was at {left} when the stage {stage} ended, and was not down to {to} for good later either.",
 	"cool stage later":  "{who} was still at {left} when the stage {stage} ended; it was down to {to} only {value} from {start}, after that stage. If the limit lets the later stages count, name them too in Stage, as {wider}.",
+	"cool stage again":  "{who} was at {left} when the stage {stage} ended, but rose above {to} again and was down to it for good only {value} from {start}, after that stage. If the limit lets the later stages count, name them too in Stage, as {wider}.",
 	"cool not fallen":   "{who} had not yet fallen to {start} when the history ended, so the clock never started and it cannot be told.",
 	"cool nowhere":      "No place was above the temperature at which the clock starts, so the limit does not apply.",
 	"cool never fell":   "The food was above {start} (up to {top}) and never fell to it, so the clock did not start and the limit does not apply.",
