@@ -11,8 +11,8 @@ import (
 // WorstCase is how a limit fares between the ends of what varies.
 type WorstCase struct {
 	Limit   *rules.Limit
-	At      []int8        // where each spread of the product stands: −1 Minus, 0 as typed, 1 Plus, ±(1+n) n sixty-fourths of the way there
-	Ends    []string      // the unfavourable ends that it is judged at, in words; none: the typed values are the least favourable
+	At      []float64     // where each spread of the product stands: −1 at Minus, 0 as typed, 1 at Plus, and in proportion between these
+	Ends    []string      // the unfavourable ends, or values between them, that it is judged at, in words; none: the typed values are the least favourable
 	Nominal rules.Finding // what the typed values give
 	Share   *Share        // of drawn pieces; nil if none were drawn
 	Drivers []Driver      // what varies, that which alone leaves the least room first

@@ -2,6 +2,7 @@ package main
 
 import (
 	"fmt"
+	"maps"
 	"math"
 	"slices"
 	"strings"
@@ -23,6 +24,7 @@ type medium struct {
 	nth       int // of the records of the product's surroundings
 	step      int
 	durationS float64
+	clockS    float64         // how finely its row or its file tells when steps began and ended
 	ended     bool            // somebody wrote down when the step ended, so that it does not end at a temperature
 	courses   []model.Course  // as read, then the ends that the accuracy of the instrument, the simplification and each gap allow
 	others    map[int]float64 // how long other steps were, where the row says when they began and ended, s
@@ -45,7 +47,7 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 	}
 	v = &report.Deviation{WithinK: simplifyK}
 	cannot := func(why string) { v.Judgement = rules.Judgement{Verdict: rules.CannotTell, Why: why} }
-	media, open := r.media(p, out, v)
+	media, lengths, open := r.media(p, out, v)
 	switch {
 	case len(v.Records) == 0:
 		return nil, nil
@@ -56,7 +58,7 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 		cannot(open)
 		return v, nil
 	}
-	after, err := r.inMedia(p, media, make([]int, len(media)))
+	after, err := r.inMedia(p, media, make([]int, len(media)), nil)
 	if err != nil {
 		cannot("it cannot be calculated: " + oneLine(err))
 		return v, media
@@ -68,14 +70,16 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 		asRead = append(asRead, findings[i].Verdict)
 	}
 	for _, which := range ends(media) {
-		bound, err := r.inMedia(p, media, which)
-		if err != nil {
-			cannot("its bounds cannot be calculated: " + oneLine(err))
-			return v, media
-		}
-		for i := range findings {
-			if i < len(bound.Judgement.Findings) && rules.Worse(&bound.Judgement.Findings[i], &findings[i]) {
-				findings[i] = bound.Judgement.Findings[i]
+		for _, lasted := range lasted(lengths) {
+			bound, err := r.inMedia(p, media, which, lasted)
+			if err != nil {
+				cannot("its bounds cannot be calculated: " + oneLine(err))
+				return v, media
+			}
+			for i := range findings {
+				if i < len(bound.Judgement.Findings) && rules.Worse(&bound.Judgement.Findings[i], &findings[i]) {
+					findings[i] = bound.Judgement.Findings[i]
+				}
 			}
 		}
 	}
@@ -93,9 +97,10 @@ func (r *runner) deviate(p *workbook.Product, out *report.Product) (v *report.De
 	return v, media
 }
 
-// media reads the records of the surroundings of a product into v, and gives those that can be used. open says why nobody can tell by them
+// media reads the records of the surroundings of a product into v, and gives those that can be used, and the lengths of steps that they leave open
+// within what their clocks tell. open says why nobody can tell by them
 // what the surroundings were; "" if that is plain.
-func (r *runner) media(p *workbook.Product, out *report.Product, v *report.Deviation) (media []*medium, open string) {
+func (r *runner) media(p *workbook.Product, out *report.Product, v *report.Deviation) (media []*medium, lengths []length, open string) {
 	for i := range r.plan.Records {
 		rec := &r.plan.Records[i]
 		if !rec.Sound || rec.Of != workbook.OfMedium || !slices.ContainsFunc(rec.Products, func(q *workbook.Product) bool { return q.Name == p.Name }) {
@@ -115,28 +120,47 @@ func (r *runner) media(p *workbook.Product, out *report.Product, v *report.Devia
 		media = append(media, air)
 	}
 	if open != "" {
-		return media, open
+		return media, nil, open
 	}
 	for k := range p.Steps {
-		if a, b, wrong := settle(media, k, p.Steps[k].Name); wrong != nil {
-			v.Records[b.nth].Problems.Add(*wrong)
-			return media, fmt.Sprintf("%s and %s do not agree on how long %s was", a.named(), b.named(), p.Steps[k].Name)
+		l := settle(media, k, p.Steps[k].Name)
+		switch {
+		case l.wrong != nil:
+			v.Records[l.b.nth].Problems.Add(*l.wrong)
+			return media, nil, fmt.Sprintf("%s and %s do not agree on how long %s was", l.a.named(), l.b.named(), p.Steps[k].Name)
+		case l.mostS > l.leastS+tiny:
+			lengths = append(lengths, l)
 		}
 	}
-	return media, ""
+	if len(lengths) > openLengths {
+		return media, nil, fmt.Sprintf("the records differ on how long %d steps were", len(lengths))
+	}
+	return media, lengths, ""
 }
 
 // named is the record of a medium, with its row.
 func (m *medium) named() string { return fmt.Sprintf("%s (%s)", m.of.Name, m.of.At) }
 
-// sameLengthS is how far apart two lengths of one step may lie that are the same, s.
+// sameLengthS is by how much more than was recorded a step may have lasted by another record, s.
 const sameLengthS = 1
 
-// settle looks at how long a step was by each record that says so. Where two differ, wrong says it of the later, b. The record of the step's own
-// surroundings takes the length from another one that says it where it does not itself, as far as its readings were taken.
-func settle(media []*medium, step int, name string) (a, b *medium, wrong *cell.Error) {
+// openLengths is of how many steps at most two records may tell the length a little differently; of more they do not agree.
+const openLengths = 2
+
+// length is how long a step was by the records that say so, s: the shortest and the longest.
+type length struct {
+	step          int
+	leastS, mostS float64
+	a, b          *medium     // two records that do not agree, the later one last
+	wrong         *cell.Error // says so; nil if all agree
+}
+
+// settle looks at how long a step was by each record that says so. Two that differ by less than their clocks tell leave it open between them; of two
+// that differ by more, wrong says it of the later, b. The record of the step's own surroundings takes the length from another one that says it
+// where it does not itself, as far as its readings were taken.
+func settle(media []*medium, step int, name string) length {
 	var own, says *medium
-	long := 0.0
+	l, long := length{step: step}, 0.0
 	for _, m := range media {
 		s, said := m.others[step]
 		if m.step == step {
@@ -146,28 +170,50 @@ func settle(media []*medium, step int, name string) (a, b *medium, wrong *cell.E
 		}
 		switch {
 		case said && says == nil:
-			says, long = m, s
-		case said && math.Abs(s-long) > sameLengthS:
-			return says, m, fault(m.of, "Starts at", "", fmt.Sprintf("%s lasted %s by it, and %s by %s", name, report.Duration(s), report.Duration(long), says.named()), "correct Starts at in one of the two rows")
+			says, long, l.leastS, l.mostS = m, s, s, s
+		case said && math.Abs(s-long) >= says.clockS+m.clockS:
+			l.a, l.b = says, m
+			l.wrong = fault(m.of, "Starts at", "", fmt.Sprintf("%s lasted %s by it, and %s by %s", name, report.Duration(s), report.Duration(long), says.named()), "correct Starts at in one of the two rows")
+			return l
+		case said:
+			l.leastS, l.mostS = min(l.leastS, s), max(l.mostS, s)
 		}
 	}
-	if own == nil || own.ended || says == nil {
-		return nil, nil, nil
-	}
-	if long > own.durationS+sameLengthS {
-		a, b = own, says
-		if a.nth > b.nth {
-			a, b = b, a
+	switch {
+	case own == nil || own.ended || says == nil:
+	case long > own.durationS+sameLengthS:
+		if l.a, l.b = own, says; own.nth > says.nth {
+			l.a, l.b = says, own
 		}
-		return a, b, fault(b.of, "Starts at", "", fmt.Sprintf("%s lasted %s by %s, and %s, which does not say when it ended, is taken for %s", name, report.Duration(long), says.named(), own.named(), report.Duration(own.durationS)),
+		l.wrong = fault(l.b.of, "Starts at", "", fmt.Sprintf("%s lasted %s by %s, and %s, which does not say when it ended, is taken for %s", name, report.Duration(long), says.named(), own.named(), report.Duration(own.durationS)),
 			"write in Starts at of "+own.of.Name+" when the step ended")
+	default:
+		own.durationS, own.ended = min(long, own.durationS), true
 	}
-	own.durationS, own.ended = min(long, own.durationS), true
-	return nil, nil, nil
+	return l
 }
 
-// inMedia judges a product in recorded surroundings; which are the courses that are taken, one of each.
-func (r *runner) inMedia(p *workbook.Product, media []*medium, which []int) (*report.Product, error) {
+// lasted are the lengths of steps, s by step, that are judged beside those that the records give as they come: where they leave some open, every
+// combination of the shortest and the longest.
+func lasted(lengths []length) []map[int]float64 {
+	out := []map[int]float64{nil}
+	for _, l := range lengths {
+		var next []map[int]float64
+		for _, m := range out {
+			for _, s := range []float64{l.leastS, l.mostS} {
+				with := map[int]float64{l.step: s}
+				maps.Copy(with, m)
+				next = append(next, with)
+			}
+		}
+		out = next
+	}
+	return out
+}
+
+// inMedia judges a product in recorded surroundings; which are the courses that are taken, one of each, and lasted lengths of steps that go before those
+// of the records, s; their last readings go on for the rest.
+func (r *runner) inMedia(p *workbook.Product, media []*medium, which []int, lasted map[int]float64) (*report.Product, error) {
 	q := *p
 	q.Steps = append([]model.Step(nil), p.Steps...)
 	q.Spreads = nil
@@ -189,6 +235,12 @@ func (r *runner) inMedia(p *workbook.Product, media []*medium, which []int) (*re
 			st.UntilC = nil
 		}
 	}
+	for k, s := range lasted {
+		q.Steps[k].DurationS, q.Steps[k].UntilC = s, nil
+	}
+	for _, m := range media {
+		q.Steps[m.step].Medium = goesOn(q.Steps[m.step].Medium, q.Steps[m.step].DurationS)
+	}
 	return r.judgedBy(&q, model.Options{})
 }
 
@@ -201,13 +253,21 @@ func (m *medium) into(st *model.Step, which int) {
 	st.Medium, st.Measured = m.courses[which], true
 }
 
+// goesOn is a course whose last temperature goes on up to an instant, s.
+func goesOn(c model.Course, s float64) model.Course {
+	if n := len(c.TimesS); n > 0 && c.TimesS[n-1] < s {
+		c.TimesS, c.C = append(slices.Clone(c.TimesS), s), append(slices.Clone(c.C), c.C[n-1])
+	}
+	return c
+}
+
 // traceOf is what the surroundings of all steps of a record were, on its clock; nil if they were not recorded throughout, or by an
 // instrument that is less exact than the probe.
-func traceOf(media []*medium, re *model.Recording, first int) *model.Trace {
+func traceOf(media []*medium, re *model.Recording, way *ran) *model.Trace {
 	tr := &model.Trace{Point: model.Point{Name: "medium"}}
 	for i, sp := range re.Spans {
-		k := slices.IndexFunc(media, func(m *medium) bool { return m.step == first+i })
-		if k < 0 || media[k].errorK > re.ErrorK+1e-9 || media[k].durationS < sp.EndS-sp.StartS-1 {
+		k := slices.IndexFunc(media, func(m *medium) bool { return m.step == way.first+i })
+		if k < 0 || media[k].errorK > re.ErrorK+1e-9 || sp.EndS-sp.StartS-media[k].durationS >= way.clockS+media[k].clockS {
 			return nil
 		}
 		for n, t := range media[k].timesS {
@@ -296,7 +356,7 @@ func (r *runner) surroundings(rec *workbook.Record, p *workbook.Product, out *re
 // mediumOf makes the course of a step of a record. The record must cover the step, which is as long as the row says, else as the plan
 // has it; lengths are those of the plan, s.
 func mediumOf(rec *workbook.Record, log *record.Log, p *workbook.Product, lengths []float64, m *report.Measured) (*medium, *cell.Error) {
-	air := &medium{step: stepNamed(p.Steps, rec.Step), errorK: errorOf(rec, log)}
+	air := &medium{step: stepNamed(p.Steps, rec.Step), errorK: errorOf(rec, log), clockS: clockOf(rec, log)}
 	st := &p.Steps[air.step]
 	if len(st.Medium.TimesS) == 0 {
 		return nil, fault(rec, "What it measured", rec.Measured, st.Name+" has no surroundings with a temperature", "name another step")

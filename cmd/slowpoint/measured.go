@@ -127,6 +127,7 @@ func surroundedBy(p *workbook.Product) (lo, hi, film float64, whole bool) {
 type ran struct {
 	first  int       // the first step that it covers
 	startS []float64 // of each covered step, s from the first reading; and behind the last its end
+	clockS float64   // how finely these are told
 }
 
 // fault is a mistake in a cell of a record's row.
@@ -142,7 +143,7 @@ func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths 
 	}
 	given := map[int]float64{} // by step
 	end := log.TimesS[len(log.TimesS)-1]
-	r := &ran{}
+	r := &ran{clockS: clockOf(rec, log)}
 	starts, wrong := startsOf(rec, log, steps, 0)
 	if wrong != nil {
 		return nil, wrong
@@ -186,6 +187,26 @@ func laidOut(rec *workbook.Record, log *record.Log, steps []model.Step, lengths 
 		return nil, fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it")
 	}
 	return r, nil
+}
+
+// clockOf is how finely a record tells when steps began and ended, s: a minute where its row has times in whole minutes, or none and the clock
+// of the file shows whole minutes; else a second.
+func clockOf(rec *workbook.Record, log *record.Log) float64 {
+	fine := func(s float64) bool { return math.Abs(s-60*math.Round(s/60)) > tiny }
+	typed := false
+	for i := range rec.Starts {
+		s := &rec.Starts[i]
+		if s.Clock || s.Elapsed && s.After > 0 {
+			typed = true
+		}
+		if fine(s.After.Seconds()) {
+			return 1
+		}
+	}
+	if !typed && (slices.ContainsFunc(log.TimesS, fine) || log.Start.Second() != 0 || log.Start.Nanosecond() != 0) {
+		return 1
+	}
+	return 60
 }
 
 // nextGiven is the next of n steps whose beginning is known; −1 if there is none.
@@ -412,7 +433,7 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 		m.Problems.Add(*fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it"))
 		return m
 	}
-	re.Medium = traceOf(media, re, way.first)
+	re.Medium = traceOf(media, re, way)
 	findings, err := rules.FindRecorded(r.plan.Limits, rules.Recorded{Product: p.Name, Family: p.Family, Recording: bordered(re, log, way)})
 	if err != nil {
 		m.Problems.Add(cell.Error{At: rec.At, Msg: "The record cannot be judged: " + err.Error()})
@@ -597,13 +618,13 @@ func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.
 			continue
 		}
 		st := &steps[air.step]
-		if air.durationS <= st.DurationS-sameLengthS {
+		if st.DurationS-air.durationS >= way.clockS+air.clockS {
 			m.Problems.Add(cell.Error{At: rec.At, Level: cell.Note, Msg: fmt.Sprintf("Beside it %s is calculated for %s, and was recorded for %s by %s: the planned surroundings are taken there",
 				st.Name, report.Duration(st.DurationS), report.Duration(air.durationS), air.named()), Hint: "write in both rows when the step began and ended"})
 			continue
 		}
 		air.into(st, 0)
-		st.DurationS, a.Air = min(st.DurationS, air.durationS), true
+		st.Medium, a.Air = goesOn(st.Medium, st.DurationS), true // its last reading goes on for what the clocks differ by
 	}
 	h, err := model.Solve(p.Product, steps, model.Options{})
 	if err != nil {

@@ -359,7 +359,7 @@ func TestRecordedAirHelps(t *testing.T) {
 
 // TestAirTooShort: air that was recorded for less time than the probe says that the step lasted is not taken for the prediction beside it, and that is said.
 func TestAirTooShort(t *testing.T) {
-	for _, c := range []struct{ minutes, notes int }{{120, 0}, {150, 1}} {
+	for _, c := range []struct{ minutes, notes int }{{120, 0}, {121, 0}, {150, 1}} {
 		r, p := slabRunner(model.Cool, 0.04, 60, 5, 25, 2*3600, coolTo(35, 90*60))
 		out, err := r.judged(p)
 		if err != nil {
@@ -780,10 +780,11 @@ func TestDeviateTwice(t *testing.T) {
 	}
 }
 
-// TestDeviateOtherTimes: two records that give a step different lengths leave open which it had; a length that only one gives counts.
+// TestDeviateOtherTimes: two records that give a step different lengths leave open which it had, unless they differ by less than times in whole
+// minutes, or in seconds, tell; a length that only one gives counts.
 func TestDeviateOtherTimes(t *testing.T) {
-	after := func(step string, m int) workbook.Start {
-		return workbook.Start{Step: step, Elapsed: true, After: time.Duration(m) * time.Minute, Typed: fmt.Sprintf("%s %d min", step, m)}
+	after := func(step string, m float64) workbook.Start {
+		return workbook.Start{Step: step, Elapsed: true, After: time.Duration(m * float64(time.Minute)), Typed: fmt.Sprintf("%s %g min", step, m)}
 	}
 	for _, c := range []struct {
 		name         string
@@ -795,6 +796,10 @@ func TestDeviateOtherTimes(t *testing.T) {
 		{"a step that one measured", []workbook.Start{after("bath", 0), after("store", 60)}, []workbook.Start{after("bath", 0), after("store", 80)}, "bath", 0},
 		{"agreed", []workbook.Start{after("carry", 0), after("bath", 10), after("store", 80)}, []workbook.Start{after("carry", 5), after("bath", 15), after("store", 85)}, "", 600 + 4200 + 1800},
 		{"said by the other alone", []workbook.Start{after("bath", 0)}, []workbook.Start{after("bath", 0), after("store", 40)}, "", 600 + 2400 + 1800},
+		{"a minute apart, in whole minutes", []workbook.Start{after("carry", 0), after("bath", 10)}, []workbook.Start{after("carry", 0), after("bath", 11), after("store", 71)}, "", 660 + 3600 + 1800},
+		{"two minutes apart, in whole minutes", []workbook.Start{after("carry", 0), after("bath", 10)}, []workbook.Start{after("carry", 0), after("bath", 12), after("store", 72)}, "carry", 0},
+		{"half a minute apart, one of them in seconds", []workbook.Start{after("carry", 0), after("bath", 10)}, []workbook.Start{after("carry", 0), after("bath", 10.5), after("store", 70.5)}, "", 630 + 3600 + 1800},
+		{"half a minute apart, in seconds", []workbook.Start{after("carry", 0), after("bath", 10.1)}, []workbook.Start{after("carry", 0), after("bath", 10.6), after("store", 70.6)}, "carry", 0},
 		{"longer by the other alone", []workbook.Start{after("bath", 0)}, []workbook.Start{after("bath", 0), after("store", 75)}, "bath", 0},
 	} {
 		r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 3600, coolTo(20, 3600))
@@ -825,6 +830,80 @@ func TestDeviateOtherTimes(t *testing.T) {
 			if msg := last[len(last)-1].Msg; !strings.Contains(msg, c.told) || !strings.Contains(msg, "Air (Records row 2)") {
 				t.Errorf("%s: %q", c.name, msg)
 			}
+		}
+	}
+}
+
+// TestDeviateEitherLength: where two clocks in whole minutes differ by one on how long a step was, what only the longer one gives cannot be told.
+func TestDeviateEitherLength(t *testing.T) {
+	after := func(step string, m int) workbook.Start {
+		return workbook.Start{Step: step, Elapsed: true, After: time.Duration(m) * time.Minute, Typed: fmt.Sprintf("%s %d min", step, m)}
+	}
+	r, p := slabRunner(model.Cool, 0.04, 60, 2, 25, 3600, coolTo(20, 4000))
+	h, err := model.Solve(p.Product, p.Steps, model.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	reached := h.At(model.Place{}, 59.5*60) // by the centre, half a minute before the end of the hour
+	r.plan.Limits[0].ToC = &reached
+	store := p.Steps[0]
+	store.Name, store.Stage, store.DurationS = "store", model.HoldCold, 1800
+	p.Steps = append(p.Steps, store)
+	at, air := minutesOf(150, func(m int) float64 { return 2 + 0.01*float64(m%2) })
+	withAir(t, r, at, air, 0)
+	other := r.plan.Records[0]
+	other.Name, other.Step, other.Measured = "Store", "store", "medium of store"
+	r.plan.Records = append(r.plan.Records, other)
+	for _, c := range []struct {
+		own, other int // min
+		want       rules.Verdict
+	}{{60, 60, rules.Met}, {59, 59, rules.NotMet}, {60, 59, rules.CannotTell}, {59, 60, rules.NotMet}} { // the length by the record of the bath itself goes first
+		r.plan.Records[0].Starts = []workbook.Start{after("bath", 0), after("store", c.own)}
+		r.plan.Records[1].Starts = []workbook.Start{after("bath", 0), after("store", c.other)}
+		r.logs = newLogs(r.plan, r.logs.folder, time.Time{})
+		out, err := r.judged(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if v, _ := r.deviate(p, out); v.Judgement.Verdict != c.want {
+			t.Errorf("%d and %d min: %v (%s), want %v", c.own, c.other, v.Judgement.Verdict, v.Judgement.Why, c.want)
+		}
+	}
+}
+
+// TestClockOf: how finely a record tells when steps began.
+func TestClockOf(t *testing.T) {
+	minute, second := workbook.Start{Clock: true, After: 9*time.Hour + 12*time.Minute}, workbook.Start{Clock: true, After: 9*time.Hour + 12*time.Minute + 30*time.Second}
+	for _, c := range []struct {
+		name   string
+		starts []workbook.Start
+		start  time.Time
+		timesS []float64
+		want   float64
+	}{
+		{"row in minutes", []workbook.Start{minute, {End: true, Elapsed: true, After: time.Hour}}, time.Time{}, []float64{0, 7}, 60},
+		{"row in seconds", []workbook.Start{minute, second}, time.Time{}, []float64{0, 60}, 1},
+		{"file in minutes", []workbook.Start{{Step: "Oven"}}, time.Date(2026, 1, 19, 9, 12, 0, 0, time.UTC), []float64{0, 60, 240}, 60},
+		{"file from a second on", nil, time.Date(2026, 1, 19, 9, 12, 17, 0, time.UTC), []float64{0, 60, 240}, 1},
+		{"file in seconds", nil, time.Date(2026, 1, 19, 9, 12, 0, 0, time.UTC), []float64{0, 60, 121}, 1},
+		{"elapsed minutes", nil, time.Time{}, []float64{0, 60, 120}, 60},
+	} {
+		if got := clockOf(&workbook.Record{Starts: c.starts}, &record.Log{Start: c.start, TimesS: c.timesS}); got != c.want {
+			t.Errorf("%s: %g s, want %g s", c.name, got, c.want)
+		}
+	}
+}
+
+// TestTraceOfOtherClock: air that was recorded for as long as a step lasted by the probe, as far as the two clocks tell, bounds the food in gaps.
+func TestTraceOfOtherClock(t *testing.T) {
+	for _, c := range []struct {
+		probeS, airS, lastedS float64 // how finely the two clocks tell; the step by the probe, and by the air 3600 s
+		want                  bool
+	}{{60, 60, 3660, true}, {60, 60, 3720, false}, {1, 60, 3660, true}, {1, 1, 3601, true}, {1, 1, 3660, false}} {
+		re := &model.Recording{Spans: []model.Span{{StartS: 0, EndS: c.lastedS}}}
+		air := &medium{durationS: 3600, clockS: c.airS, timesS: []float64{0, 3600}, c: []float64{3, 4}}
+		if got := traceOf([]*medium{air}, re, &ran{clockS: c.probeS}); (got != nil) != c.want {
+			t.Errorf("%+v: %v", c, got)
 		}
 	}
 }

@@ -1,6 +1,7 @@
 package main
 
 import (
+	"encoding/binary"
 	"errors"
 	"fmt"
 	"math"
@@ -24,50 +25,35 @@ const (
 	endSpreads  = 6
 )
 
-// corner is where each spread of a product stands: −1 at its Minus end, 0 as typed, 1 at its Plus end; ±(1+n) is n parts of the way to
-// an end.
-type corner []int8
+// corner is where each spread of a product stands, as workbook.Varied takes it: −1 at its Minus end, 0 as typed, 1 at its Plus end, and in
+// proportion between these.
+type corner []float64
 
-// parts is how many there are of the way from the typed value to an end.
+// parts is how many there are of the way from the typed value to an end; places between lie at whole parts.
 const parts = 64
 
-// places are the same as workbook.Varied takes them.
-func (c corner) places() []float64 {
-	out := make([]float64, len(c))
-	for i, v := range c {
-		switch {
-		case v > 1:
-			out[i] = float64(v-1) / parts
-		case v < -1:
-			out[i] = float64(v+1) / parts
-		default:
-			out[i] = float64(v)
-		}
-	}
-	return out
-}
-
 // with is the corner with one spread elsewhere.
-func (c corner) with(i int, at int8) corner {
+func (c corner) with(i int, at float64) corner {
 	d := slices.Clone(c)
 	d[i] = at
 	return d
 }
 
 // nominal tells whether everything is as typed.
-func (c corner) nominal() bool { return !slices.ContainsFunc(c, func(v int8) bool { return v != 0 }) }
+func (c corner) nominal() bool {
+	return !slices.ContainsFunc(c, func(v float64) bool { return v != 0 })
+}
 
-// words are the ends of a corner in words, in the order of the plan.
-func (c corner) words(p *workbook.Product) []string {
+// words are the places of a corner that are not as typed, in words, in the order of the plan.
+func (s *search) words(c corner) []string {
 	var out []string
 	for i, v := range c {
-		switch {
-		case v > 1:
-			out = append(out, fmt.Sprintf("%d/%d of %s", v-1, parts, p.Spreads[i].End(1)))
-		case v < -1:
-			out = append(out, fmt.Sprintf("%d/%d of %s", -v-1, parts, p.Spreads[i].End(-1)))
-		case v != 0:
-			out = append(out, p.Spreads[i].End(int(v)))
+		switch v {
+		case 0:
+		case -1, 1:
+			out = append(out, s.p.Spreads[i].End(int(v)))
+		default:
+			out = append(out, s.p.Between(i, v, s.r.plan.Fahrenheit))
 		}
 	}
 	return out
@@ -111,9 +97,9 @@ func (r *runner) searching(p *workbook.Product, typed []rules.Finding, o model.O
 
 // key is a corner as the index of the map.
 func (c corner) key() string {
-	b := make([]byte, len(c))
-	for i, v := range c {
-		b[i] = byte(v)
+	b := make([]byte, 0, 8*len(c))
+	for _, v := range c {
+		b = binary.LittleEndian.AppendUint64(b, math.Float64bits(v))
 	}
 	return string(b)
 }
@@ -128,9 +114,9 @@ func (s *search) knows(c corner, k int) bool {
 }
 
 // ends are the places, other than now, that a spread may stand at.
-func (s *search) ends(i int, now int8) []int8 {
-	var out []int8
-	for _, v := range []int8{-1, 0, 1} {
+func (s *search) ends(i int, now float64) []float64 {
+	var out []float64
+	for _, v := range []float64{-1, 0, 1} {
 		d := s.p.Spreads[i].Plus
 		if v < 0 {
 			d = s.p.Spreads[i].Minus
@@ -173,7 +159,7 @@ func (s *search) need(list []ask) error {
 	}
 	at, which := make([][]float64, len(order)), make([][]int, len(order))
 	for i, c := range order {
-		at[i], which[i] = c.places(), due[c.key()]
+		at[i], which[i] = c, due[c.key()]
 	}
 	found, err := s.solve(at, which)
 	if err != nil {
@@ -259,12 +245,12 @@ func (s *search) refusal(at []float64, err error) error {
 		}
 	}
 	var es cell.Errors
-	i := slices.IndexFunc(c, func(v int8) bool { return v != 0 })
+	i := slices.IndexFunc(c, func(v float64) bool { return v != 0 })
 	if !errors.As(err, &es) || i < 0 || len(es) == 0 {
 		return err
 	}
 	return cell.Errors{{At: s.p.Spreads[i].At, Level: cell.Fault, Field: "Quantity", Typed: s.p.Spreads[i].Of.Name,
-		Msg:  fmt.Sprintf("varies together with others to what cannot be calculated (%s): %s", strings.Join(c.words(s.p), ", "), strings.TrimSpace(es[0].Typed+" "+es[0].Msg)),
+		Msg:  fmt.Sprintf("varies together with others to what cannot be calculated (%s): %s", strings.Join(s.words(c), ", "), strings.TrimSpace(es[0].Typed+" "+es[0].Msg)),
 		Hint: "let them vary less, or change what it is about"}}
 }
 
@@ -405,14 +391,14 @@ func (s *search) between(worst []corner) error {
 
 // inner are places of a spread between its ends: half way to each, and of temperatures the quarters and those that bring the start just to
 // either side of where a limit begins to count.
-func (s *search) inner(i int, typed []rules.Finding) []int8 {
+func (s *search) inner(i int, typed []rules.Finding) []float64 {
 	sp := &s.p.Spreads[i]
 	within := []int{parts / 2}
 	if strings.HasSuffix(sp.Of.Name, "temperature") {
 		within = []int{parts / 4, parts / 2, parts * 3 / 4}
 	}
 	minus, plus := s.p.Span(i)
-	var out []int8
+	var out []float64
 	for _, side := range []struct {
 		sign int
 		by   float64
@@ -427,7 +413,7 @@ func (s *search) inner(i int, typed []rules.Finding) []int8 {
 		slices.Sort(here)
 		for _, n := range slices.Compact(here) {
 			if n > 0 && n < parts {
-				out = append(out, int8(side.sign*(1+n)))
+				out = append(out, float64(side.sign*n)/parts)
 			}
 		}
 	}
@@ -445,8 +431,8 @@ func (s *search) starting(i, sign int, by float64, l *rules.Limit) []int {
 }
 
 // beside are the places of a spread, between its ends, that starting gives.
-func (s *search) beside(i int, l *rules.Limit) []int8 {
-	var out []int8
+func (s *search) beside(i int, l *rules.Limit) []float64 {
+	var out []float64
 	minus, plus := s.p.Span(i)
 	for _, side := range []struct {
 		sign int
@@ -457,7 +443,7 @@ func (s *search) beside(i int, l *rules.Limit) []int8 {
 		}
 		for _, n := range s.starting(i, side.sign, side.by, l) {
 			if n > 0 && n < parts {
-				out = append(out, int8(side.sign*(1+n)))
+				out = append(out, float64(side.sign*n)/parts)
 			}
 		}
 	}
@@ -466,17 +452,17 @@ func (s *search) beside(i int, l *rules.Limit) []int8 {
 
 // slowing gives the ends at which heat moves slowly through a food, by quantity: 1 is Plus. Those of temperatures and durations depend on
 // what the steps are for.
-var slowing = map[string]int8{"thickness": 1, "width": 1, "length": 1, "diameter": 1, "film coefficient": -1, "air speed": -1, "conductivity": -1,
+var slowing = map[string]float64{"thickness": 1, "width": 1, "length": 1, "diameter": 1, "film coefficient": -1, "air speed": -1, "conductivity": -1,
 	"specific heat": 1, "density": 1}
 
 // physical are the corners that no single end may lead to, where a step ends at a temperature say, and each end alone leaves the margin as it
 // is: everything slow and cold, or quick and hot, in heating, with everything slow and warm, or quick and cold, afterwards, and durations both ways.
 func (s *search) physical() []corner {
 	var out []corner
-	for _, heating := range []int8{-1, 1} { // cold and slow, hot and quick
-		for _, after := range []int8{-1, 1} { // warm and slow, cold and quick
-			for _, size := range []int8{-1, 1} {
-				for _, time := range []int8{-1, 1} {
+	for _, heating := range []float64{-1, 1} { // cold and slow, hot and quick
+		for _, after := range []float64{-1, 1} { // warm and slow, cold and quick
+			for _, size := range []float64{-1, 1} {
+				for _, time := range []float64{-1, 1} {
 					c := make(corner, len(s.p.Spreads))
 					for i := range c {
 						sp := &s.p.Spreads[i]
@@ -596,10 +582,10 @@ func (r *runner) worst(p *workbook.Product, out *report.Product, typed []rules.F
 	runs := map[string]*prediction{}
 	for k, c := range worst {
 		f := s.at(c)[k]
-		w := report.WorstCase{Limit: f.Limit, At: c, Ends: s.telling(k, c).words(p), Nominal: typed[k], Drivers: s.drivers(k)}
+		w := report.WorstCase{Limit: f.Limit, At: c, Ends: s.words(s.telling(k, c)), Nominal: typed[k], Drivers: s.drivers(k)}
 		if !c.nominal() {
 			if runs[c.key()] == nil {
-				q := p.Varied(c.places())
+				q := p.Varied(c)
 				if runs[c.key()], err = r.predict(&q, o); err != nil {
 					return err
 				}

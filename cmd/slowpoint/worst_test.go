@@ -12,6 +12,7 @@ import (
 
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
+	"slowpoint/model/cell"
 	"slowpoint/report"
 	"slowpoint/rules"
 )
@@ -125,7 +126,7 @@ func TestCornerIsTheWorstOfAllCombinations(t *testing.T) {
 	for n := range 729 {
 		c := corner{}
 		for k := n; len(c) < 6; k /= 3 {
-			c = append(c, int8(k%3)-1)
+			c = append(c, float64(k%3)-1)
 		}
 		all = append(all, c)
 	}
@@ -202,21 +203,23 @@ func TestWorstValueBetweenTheEnds(t *testing.T) {
 	r.plan.Limits = []rules.Limit{{Name: "Cold", Kind: rules.CoolWithin, Stages: []*model.Stage{model.Cool}, Applies: rules.Applies{All: true},
 		FromC: &from, ToC: &to, TimeS: &within, Clock: rules.Clock{Crossing: true}}}
 	p.Spreads = []workbook.Spread{vary("start temperature", -1, 8, 8, false)}
+	p.Spreads[0].At = cell.Ref{Sheet: "Spread", Row: 2}
 	s := searchOf(t, r, p)
 	worst, err := s.corners()
 	if err != nil {
 		t.Fatal(err)
 	}
-	for _, v := range []int8{-1, 0, 1} {
+	for _, v := range []float64{-1, 0, 1} {
 		if got := s.at(corner{v})[0].Verdict; got == rules.NotMet {
-			t.Errorf("place %d: %v, so that the ends alone show it", v, got)
+			t.Errorf("place %g: %v, so that the ends alone show it", v, got)
 		}
 	}
 	at := s.at(worst[0])
-	if at[0].Verdict != rules.NotMet || worst[0].places()[0] != -31.0/64 {
-		t.Errorf("%v at %v, want not met at -31/64", at[0].Verdict, worst[0].places())
+	if at[0].Verdict != rules.NotMet || worst[0][0] != -31.0/64 {
+		t.Errorf("%v at %v, want not met at -31/64", at[0].Verdict, worst[0])
 	}
-	if words := worst[0].words(p); len(words) != 1 || !strings.HasPrefix(words[0], "31/64 of ") {
+	// 64 − 8·31/64 = 60.125 °C
+	if words := s.words(worst[0]); len(words) != 1 || words[0] != "start temperature 60.13 °C (between the ends of Spread row 2)" {
 		t.Errorf("words %q", words)
 	}
 	var grid [][]float64

@@ -50,6 +50,7 @@ type Varies struct {
 	has        func(p *model.Product, s *model.Step) bool
 	value      func(p *model.Product, s *model.Step) float64                     // least value that must stay positive
 	move       func(p *model.Product, s *model.Step, by func(v float64) float64) // by gives the new value of an old one
+	one        func(p *model.Product, s *model.Step) (float64, bool)             // its value, if there is but one; nil: there are several as a rule
 }
 
 // degrees of a deviation: °C and K are one, and °F scales without a shift.
@@ -65,6 +66,7 @@ func sizeVaries(name, less, more string) *Varies {
 			return p.Shape != nil && (slices.Contains(p.Shape.Needs, column) || p.Shape == model.LayeredSlab && name == "thickness")
 		},
 		value: func(p *model.Product, _ *model.Step) float64 { return *p.Size.Of(column) },
+		one:   func(p *model.Product, _ *model.Step) (float64, bool) { return *p.Size.Of(column), true },
 		move: func(p *model.Product, _ *model.Step, by func(float64) float64) {
 			was := *p.Size.Of(column)
 			*p.Size.Of(column) = by(was)
@@ -141,6 +143,18 @@ func leastOf(s *model.Step, of func(*model.Exposure) *float64) float64 {
 	return least
 }
 
+// oneMedium is the temperature of all surroundings of a step, if it is one and the same throughout.
+func oneMedium(_ *model.Product, s *model.Step) (float64, bool) {
+	var all []float64
+	for _, e := range exposures(s) {
+		all = append(all, e.Medium.C...)
+	}
+	if len(all) == 0 || slices.Min(all) < slices.Max(all) {
+		return 0, false
+	}
+	return all[0], true
+}
+
 // worksOut tells whether the program works the film of an exposure out, as one number or by the surface temperature.
 func worksOut(e *model.Exposure) bool {
 	return e.FilmW == nil && e.Surface != nil && !e.Surface.NoMedium && e.Surface != model.Held && e.Surface != model.ContactPlate && e.Surface != model.Film
@@ -154,7 +168,8 @@ var Spreads = []*Varies{
 	sizeVaries("diameter", "less in diameter", "more in diameter"),
 	{Name: "start temperature", quantity: &spreadDegrees, example: "2 °C", less: "colder at the start", more: "warmer at the start",
 		has:  func(*model.Product, *model.Step) bool { return true },
-		move: func(p *model.Product, _ *model.Step, by func(float64) float64) { p.StartC = by(p.StartC) }},
+		move: func(p *model.Product, _ *model.Step, by func(float64) float64) { p.StartC = by(p.StartC) },
+		one:  func(p *model.Product, _ *model.Step) (float64, bool) { return p.StartC, true }},
 	{Name: "medium temperature", quantity: &spreadDegrees, example: "3 °C", ofStep: true, less: "colder", more: "warmer",
 		has: func(_ *model.Product, s *model.Step) bool {
 			return anyExposure(s, func(e *model.Exposure) bool { return len(e.Medium.C) > 0 })
@@ -170,7 +185,8 @@ var Spreads = []*Varies{
 					e.RadiatingC = &walls
 				}
 			}
-		}},
+		},
+		one: oneMedium},
 	{Name: "film coefficient", quantity: &unit.Film, example: "25 %", percent: true, ofStep: true, less: "less film coefficient", more: "more film coefficient", positive: true,
 		has: func(_ *model.Product, s *model.Step) bool {
 			return anyExposure(s, func(e *model.Exposure) bool { return e.FilmW != nil || worksOut(e) })
@@ -210,7 +226,8 @@ var Spreads = []*Varies{
 	{Name: "duration", quantity: &unit.Duration, example: "5 min", percent: true, ofStep: true, less: "shorter", more: "longer", positive: true,
 		has:   func(_ *model.Product, s *model.Step) bool { return true },
 		value: func(_ *model.Product, s *model.Step) float64 { return s.DurationS },
-		move:  func(_ *model.Product, s *model.Step, by func(float64) float64) { s.DurationS = by(s.DurationS) }},
+		move:  func(_ *model.Product, s *model.Step, by func(float64) float64) { s.DurationS = by(s.DurationS) },
+		one:   func(_ *model.Product, s *model.Step) (float64, bool) { return s.DurationS, true }},
 	{Name: "probe", quantity: &unit.Length, example: "3 mm", less: "lower or further in", more: "higher or further out",
 		has: func(p *model.Product, _ *model.Step) bool { return len(p.Points) > 0 },
 		move: func(p *model.Product, _ *model.Step, by func(float64) float64) {
@@ -272,11 +289,15 @@ func (s *Spread) Named() string {
 
 // End words an end: "2 mm thicker", "Chill 3 °C warmer". at: below 0 Minus, above 0 Plus.
 func (s *Spread) End(at int) string {
-	d, word := s.Plus, s.Of.more
 	if at < 0 {
-		d, word = s.Minus, s.Of.less
+		return s.off(s.Minus.Typed + " " + s.Of.less)
 	}
-	switch words := d.Typed + " " + word; {
+	return s.off(s.Plus.Typed + " " + s.Of.more)
+}
+
+// off says of what a deviation is: "Chill 3 °C warmer".
+func (s *Spread) off(words string) string {
+	switch {
 	case s.StepName != "":
 		return s.StepName + " " + words
 	case s.Of.ofSize():
@@ -286,6 +307,67 @@ func (s *Spread) End(at int) string {
 	default:
 		return words
 	}
+}
+
+// Between words a place between the typed value and an end, from −1, which is Minus, to 1, which is Plus: by its value where there is one,
+// "start temperature 61.4 °C (between the ends of Spread row 3)", else by how far it is off, "conductivity 2.5 % lower (…)".
+func (p *Product) Between(i int, at float64, fahrenheit bool) string {
+	s := &p.Spreads[i]
+	words := s.Named() + " " + p.valueAt(i, at, fahrenheit)
+	switch {
+	case words != s.Named()+" ":
+	case at < 0:
+		words = s.off(s.Minus.part(-at, s.Of) + " " + s.Of.less)
+	default:
+		words = s.off(s.Plus.part(at, s.Of) + " " + s.Of.more)
+	}
+	return words + " (between the ends of " + s.At.String() + ")"
+}
+
+// valueAt is the value of spread i at a place, in the units of the plan; "" where it is not one value.
+func (p *Product) valueAt(i int, at float64, fahrenheit bool) string {
+	s := &p.Spreads[i]
+	if s.Of.one == nil {
+		return ""
+	}
+	places := make([]float64, len(p.Spreads))
+	places[i] = at
+	q := p.Varied(places)
+	var step *model.Step
+	if s.Step >= 0 {
+		step = &q.Steps[s.Step]
+	}
+	v, isOne := s.Of.one(&q.Product, step)
+	switch {
+	case !isOne:
+		return ""
+	case s.Of.quantity == &unit.Duration:
+		return unit.Lasting(v, nil)
+	case s.Of.ofSize() && p.Inches:
+		return hundredths(unit.Length.Unit("in").Out(v)) + " in"
+	case s.Of.ofSize():
+		return hundredths(v*1e3) + " mm"
+	case fahrenheit:
+		return hundredths(unit.Temperature.Unit("°F").Out(v)) + " °F"
+	}
+	return hundredths(v) + " °C"
+}
+
+// part is a share of a deviation from a quantity, in the unit that it is typed in.
+func (d Deviation) part(share float64, of *Varies) string {
+	if d.Share {
+		return hundredths(share*d.By*100) + " %"
+	}
+	u := of.quantity.Unit(strings.TrimLeft(d.Typed, "0123456789.,/ ½⅓⅔¼¾⅛⅜⅝⅞"))
+	if u == nil {
+		u = &of.quantity.Units[0]
+	}
+	return hundredths(u.Out(share*d.By)) + " " + u.Name()
+}
+
+// hundredths writes a number with two decimals at most.
+func hundredths(v float64) string {
+	return strings.Replace(strconv.FormatFloat(math.Round(v*100)/100+0, 'f', -1, 64), "-", "−", 1)
 }
 
 // ofSize tells whether it is a size, whose words name it by themselves.
