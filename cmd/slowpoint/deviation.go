@@ -128,7 +128,7 @@ func (r *runner) media(p *workbook.Product, out *report.Product, v *report.Devia
 		case l.wrong != nil:
 			v.Records[l.b.nth].Problems.Add(*l.wrong)
 			return media, nil, fmt.Sprintf("%s and %s do not agree on how long %s was", l.a.named(), l.b.named(), p.Steps[k].Name)
-		case l.mostS > l.leastS+tiny:
+		case l.mostS > l.leastS+sameLengthS:
 			lengths = append(lengths, l)
 		}
 	}
@@ -141,7 +141,7 @@ func (r *runner) media(p *workbook.Product, out *report.Product, v *report.Devia
 // named is the record of a medium, with its row.
 func (m *medium) named() string { return fmt.Sprintf("%s (%s)", m.of.Name, m.of.At) }
 
-// sameLengthS is by how much more than was recorded a step may have lasted by another record, s.
+// sameLengthS is by how much two lengths of a step may differ that are the same, s.
 const sameLengthS = 1
 
 // openLengths is of how many steps at most two records may tell the length a little differently; of more they do not agree.
