@@ -30,9 +30,9 @@ const (
 // Quickest says how fast a place can follow at most, with the quickest of the properties that the food has from lowC to highC, and films of no more than
 // filmW, W/(m²·K); +Inf: its surface may be held. A nil place is the slowest point, which is no quicker than the centre; any other is taken for the centre
 // of the largest ball around it within the food, held. In shapes with several directions the slopes and the rates of decay add up. ok is false where
-// conduction sets no bound (stirred) or the product is not known in full.
+// conduction sets no bound (stirred), where an outer layer that holds more heat shortens the way (layers), or the product is not known in full.
 func Quickest(p *Product, at *Place, lowC, highC, filmW float64) (q Quickness, ok bool) {
-	if p.Shape == nil || p.Shape == Stirred {
+	if p.Shape == nil || p.Shape == Stirred || p.Shape == LayeredSlab {
 		return q, false
 	}
 	alpha, holds := 0.0, math.Inf(1) // m²/s, J/(m³·K)

@@ -129,7 +129,7 @@ func TestQuickestOf(t *testing.T) {
 		{"with ice", of(slab, nil, -20), 2026.4 / 6},
 		{"15 mm up, 10 mm below its face", of(slab, &Place{UpM: 0.015}, 0), 0.01 * 0.01 / (1.25e-7 * 9.8696)},
 		{"spheroid, by its ball", of(Product{Shape: Spheroid, Food: food, Size: Size{ThicknessM: 0.08, DiameterM: 0.05}}, nil, 0), 0.025 * 0.025 / (1.25e-7 * 9.8696)},
-		{"layers, by the quicker", of(Product{Shape: LayeredSlab, Size: Size{ThicknessM: 0.05}, Layers: []Layer{{Food: food}, {Food: food}}}, nil, 0), 2026.4},
+		{"layers", of(Product{Shape: LayeredSlab, Size: Size{ThicknessM: 0.05}, Layers: []Layer{{Food: food}, {Food: food}}}, nil, 0), -1},
 		{"stirred", of(Product{Shape: Stirred, Food: food, Size: Size{VolumeM3: 0.01, AreaM2: 0.2}}, nil, 0), -1},
 		{"no size", of(Product{Shape: Slab, Food: food}, nil, 0), -1},
 		{"no food", of(Product{Shape: Slab, Size: Size{ThicknessM: 0.05}}, nil, 0), -1},

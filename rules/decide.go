@@ -280,7 +280,7 @@ func (v *view) candidates(s scope, q question) []candidate {
 			cs[n].edge = &e
 		}
 	}
-	for _, x := range v.jointsAround(s, q, cs) { // a hair's breadth beside another place it may be another verdict
+	for _, x := range v.jointsAround(s, q, cs) { // add would drop one just beside another place, though its verdict may differ
 		put(x.place(), s.surfaceOnly)
 	}
 	return cs

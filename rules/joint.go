@@ -86,6 +86,8 @@ func (v *view) jointsAround(s scope, q question, cs []candidate) []coordinates {
 		e.t, e.joint = t, &joint{region: q.region(t), pattern: e.joint.pattern, measure: q.measure}
 		if x, ok := v.follow(e, found.worst); ok {
 			places = append(places, x)
+		} else { // the pattern is another one there
+			places = append(places, v.joints(s, q, cs, t, 1).places...)
 		}
 	}
 	return places

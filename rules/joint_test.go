@@ -43,7 +43,7 @@ func (s series) stays(x, lo, hi, endS float64) (total, longest float64) {
 func TestBandWhereTwoPeriodsJoin(t *testing.T) {
 	draw := rand.New(rand.NewPCG(3, 5))
 	within := func(lo, hi float64) float64 { return lo + (hi-lo)*draw.Float64() }
-	joined := 0
+	joined, margins := 0, 0
 	for n := range 12 {
 		half, startC := within(0.012, 0.032), within(2, 10)
 		steps := []model.Step{filmStep(model.Cook, math.Round(within(40, 80)), within(85, 110), within(20, 45)), filmStep(model.Rest, 12, 21, 7),
@@ -75,12 +75,21 @@ func TestBandWhereTwoPeriodsJoin(t *testing.T) {
 			if *f.Value < longest-0.05 || *f.Value > longest*1.02+0.3 || f.Verdict != Met {
 				t.Errorf("%d, %v: %v, %.3f min at %.3f mm, the longest of 800 places is %.3f at %.3f", n, count, f.Verdict, *f.Value, 1000*f.Place.UpM, longest, 1000*at)
 			}
+			if f.MarginK != nil { // there is none where From lies so low that it plays no part
+				margins++
+				for _, by := range []float64{-0.02, 0.02} {
+					moved := one(t, Limit{Kind: Band, FromC: c(lo - *f.MarginK - by), ToC: c(hi), TimeS: min_(longest + 15), Counting: count}, h)
+					if met := moved.Verdict == Met; met != (by < 0) {
+						t.Errorf("%d, %v: %v with From %.2f K beyond the margin of %.3f K", n, count, moved.Verdict, by, *f.MarginK)
+					}
+				}
+			}
 			if f := one(t, Limit{Kind: Band, FromC: c(lo), ToC: c(hi), TimeS: min_(longest - 0.2), Counting: count}, h); f.Verdict != NotMet {
 				t.Errorf("%d, %v: %v of %.3f min with 0.2 min less allowed: %s", n, count, f.Verdict, *f.Value, f.Why)
 			}
 		}
 	}
-	if joined < 6 {
-		t.Errorf("%d longest times within the slab: the cases do not show what they should", joined)
+	if joined < 6 || margins < 10 {
+		t.Errorf("%d longest times within the slab, %d margins: the cases do not show what they should", joined, margins)
 	}
 }

@@ -278,9 +278,10 @@ type surroundings struct {
 
 // newSurroundings prepares the recorded medium; it may be nil.
 func newSurroundings(r *model.Recording) *surroundings {
-	s := &surroundings{m: r.Medium, hole: math.Inf(1), raw: raw(r)}
+	s := &surroundings{m: r.Medium, hole: math.Inf(1)}
 	if s.m == nil || len(s.m.TimesS) == 0 || len(s.m.TimesS) != len(s.m.C) || len(r.Gaps) == 0 && within(r.Spans, r.TimesS) {
 		s.m = nil
+		s.raw = raw(r, model.MostApartS(model.UsualStep(r.TimesS)))
 		s.hottest, s.coldest = s.foremost(r, 1), s.foremost(r, -1)
 		return s
 	}
@@ -290,6 +291,7 @@ func newSurroundings(r *model.Recording) *surroundings {
 			s.hole = s.m.TimesS[i-1]
 		}
 	}
+	s.raw = raw(r, model.MostApartS(s.stepS))
 	s.hottest, s.coldest = s.foremost(r, 1), s.foremost(r, -1)
 	s.lo, s.hi = s.running(s.coldest, -1), s.running(s.hottest, 1)
 	return s
@@ -363,10 +365,17 @@ func (s *surroundings) foremost(r *model.Recording, sign float64) float64 {
 	return math.NaN()
 }
 
-// raw tells whether a record begins with the first step of a chain, and that is a cook or a thaw: then no place of the food was hotter before than
-// what comes, nor colder than what was read.
-func raw(r *model.Recording) bool {
-	if len(r.Before) > 0 || len(r.Spans) == 0 || r.Spans[0].Step == nil {
+// raw tells whether a record, or that of the air, begins with the first step of a chain, but for some slack, and that is a cook or a thaw: then no place of
+// the food is taken to have been hotter before than what comes, nor colder than what was read.
+func raw(r *model.Recording, slackS float64) bool {
+	if len(r.Before) > 0 || len(r.Spans) == 0 || r.Spans[0].Step == nil || len(r.TimesS) == 0 {
+		return false
+	}
+	begins := r.TimesS[0]
+	if r.Medium != nil && len(r.Medium.TimesS) > 0 {
+		begins = math.Min(begins, r.Medium.TimesS[0])
+	}
+	if begins > r.Spans[0].StartS+slackS {
 		return false
 	}
 	st := r.Spans[0].Step.Stage

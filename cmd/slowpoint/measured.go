@@ -521,7 +521,6 @@ func recording(rec *workbook.Record, log *record.Log, p *workbook.Product, way *
 	for i := range log.Leaps {
 		if l := &log.Leaps[i]; l.Before >= from && l.First < to {
 			m.Problems.Add(l.Problem)
-			m.Doubtful += min(l.Last+1, to) - l.First
 		}
 	}
 	return re, lines

@@ -25,7 +25,7 @@ const (
 func sizeCommand(files *shelf) *cobra.Command {
 	var o sizeOptions
 	cmd := &cobra.Command{
-		Use: "size PLAN", Short: "Find the largest size, the shortest step, the medium or the start temperature that meets every limit",
+		Use: "size PLAN", Short: "Find the largest size, the shortest step, or the end, medium or start temperature that meets every limit",
 		Long: `Size varies one number of a product, leaves everything else as the plan has it, and finds the values that meet every limit of level
 must: the largest size, the shortest duration, the coldest medium or end of a step that heats and the warmest of one that does not, the
 warmest start. The value told meets the limits and its neighbour, a whole step of --step farther, does not. Margins need not go one way: all

@@ -14,7 +14,7 @@ import (
 // guide judges the values of a search at the unfavourable ends of what varies. To look for the ends of each limit anew at every value would
 // take some hundred runs a value, though they hardly change along a dial: so they are looked for at a few values, and the others are
 // judged at the ends that were worst there. A value that misses a limit at any of these is missed; one that meets them all is confirmed by
-// a search of its own before it ends a run of values that meet.
+// a search of its own, from the ends known on, before it ends a run of values that meet, and the one that is told by a search from nothing.
 type guide struct {
 	r      *runner
 	limits []*rules.Limit // those that apply; nil: nothing was looked for yet
@@ -24,12 +24,21 @@ type guide struct {
 
 // confirm looks for the unfavourable ends at a value, from those known already on, and keeps them.
 func (g *guide) confirm(p *workbook.Product) ([]rules.Finding, error) {
+	_, hints := g.known()
+	return g.search(p, hints)
+}
+
+// afresh looks for them from nothing, as check does.
+func (g *guide) afresh(p *workbook.Product) ([]rules.Finding, error) { return g.search(p, nil) }
+
+// search looks for the unfavourable ends at a value and keeps them; hints are corners that were worst beside it, nil if nothing is known.
+func (g *guide) search(p *workbook.Product, hints [][]corner) ([]rules.Finding, error) {
 	run, err := g.r.predict(p, model.Options{})
 	if err != nil {
 		return nil, g.r.located(p, err)
 	}
 	s := g.r.searching(p, run.find(g.r.plan.Limits), model.Options{})
-	_, s.hints = g.known()
+	s.hints = hints
 	worst, err := s.corners()
 	if err != nil {
 		return nil, g.r.located(p, err)

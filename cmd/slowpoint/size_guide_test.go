@@ -16,7 +16,7 @@ func (r *runner) afresh() judges {
 	return judges{look: func(p *workbook.Product) ([]rules.Finding, error) { return (&guide{r: r}).confirm(p) }}
 }
 
-// A search that goes by the ends found at a few values gives the answer of one that looks for them afresh at every value, or a safer one:
+// A search that goes by the ends found at a few values gives the answer of one that looks for them afresh at every value:
 // slabs of any size, starts on both sides of where a clock starts, all that can be varied.
 func TestSizeGoesByTheEndsFoundBeside(t *testing.T) {
 	draw := rand.New(rand.NewPCG(7, 11))

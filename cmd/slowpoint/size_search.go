@@ -22,10 +22,11 @@ const (
 // judgement gives the findings on a product with its steps; a search knows nothing else of how they come about.
 type judgement func(p *workbook.Product) ([]rules.Finding, error)
 
-// judges are the two ways to judge a value in a search: look may miss what is worse than it found, confirm may not; nil if look does not.
-type judges struct{ look, confirm judgement }
+// judges are the two ways to judge a value in a search: look at what is known, confirm searches on from
+// there until nothing is worse; nil if look does. afresh does so from nothing, as check does.
+type judges struct{ look, confirm, afresh judgement }
 
-// sure is the way that misses nothing.
+// sure is the way that searches on.
 func (j judges) sure() judgement {
 	if j.confirm != nil {
 		return j.confirm
@@ -37,7 +38,7 @@ func (j judges) sure() judgement {
 func (r *runner) judges(p *workbook.Product) judges {
 	if len(p.Spreads) > 0 {
 		g := &guide{r: r}
-		return judges{g.look, g.confirm}
+		return judges{look: g.look, confirm: g.confirm, afresh: g.afresh}
 	}
 	return judges{look: func(p *workbook.Product) ([]rules.Finding, error) {
 		run, err := r.predict(p, model.Options{})
@@ -59,7 +60,7 @@ func (j judges) without(fixed []*rules.Limit) judges {
 			return slices.DeleteFunc(fs, func(f rules.Finding) bool { return slices.Contains(fixed, f.Limit) }), err
 		}
 	}
-	return judges{less(j.look), less(j.confirm)}
+	return judges{look: less(j.look), confirm: less(j.confirm), afresh: less(j.afresh)}
 }
 
 // meetsEvery tells whether a must limit applies and all that do are met.
@@ -147,15 +148,49 @@ func (s *scan) all(ks []int) {
 // mostRounds is how often a search looks again with what it learned where it confirmed; after that it confirms everywhere.
 const mostRounds = 8
 
-// run looks along the range until what it found is confirmed.
+// run looks along the range until what it found is confirmed, the answer from nothing.
 func (s *scan) run() {
 	for range mostRounds {
-		if s.look(); s.confirm() {
+		if s.look(); s.confirm() && s.answers() {
 			return
 		}
 	}
-	s.judges = judges{look: s.judges.sure()}
+	s.judges, s.workers = judges{look: s.judges.sure()}, 1 // one by one: what one value teaches the next ones know
+	s.seen = nil
 	s.look()
+}
+
+// begin looks for a first value that can be calculated, to guide the search.
+func (s *scan) begin() {
+	if s.judges.confirm == nil {
+		return
+	}
+	for k := s.d.lo; k <= s.d.hi; k += max(1, (s.d.hi-s.d.lo+sizeGrid-1)/sizeGrid) {
+		if s.try(s.d.value(k), s.judges.confirm).err == nil {
+			return
+		}
+	}
+}
+
+// answers judges the value that will be told from nothing, and tells whether it still meets; true if there is none.
+func (s *scan) answers() bool {
+	if s.judges.afresh == nil {
+		return true
+	}
+	told := 0
+	found := false
+	for _, k := range s.steps() {
+		if s.seen[k].meets && (s.d.most || !found) {
+			told, found = k, true
+		}
+	}
+	if !found {
+		return true
+	}
+	e := s.try(s.d.value(told), s.judges.afresh)
+	e.confirmed = true
+	s.seen[told] = e
+	return e.meets
 }
 
 // confirm confirms the ends of each run of values that meet: what misses a limit where it was looked at misses it. It tells whether all of
@@ -211,12 +246,12 @@ func (s *scan) look() {
 	}
 }
 
-// forget leaves only what was confirmed.
+// forget leaves only what was confirmed not to meet: what was learned since may be worse than what a value met.
 func (s *scan) forget() {
 	if s.seen == nil {
 		s.seen = map[int]*examined{}
 	}
-	maps.DeleteFunc(s.seen, func(_ int, e *examined) bool { return !e.confirmed })
+	maps.DeleteFunc(s.seen, func(_ int, e *examined) bool { return !e.confirmed || e.meets })
 }
 
 // steps are those that were judged, rising.
@@ -296,8 +331,11 @@ func (s *scan) fixed() []*rules.Limit {
 // size searches along a dial and makes what the documents show. Where limits that nothing on the dial changes are missed, it looks for what
 // meets the others.
 func (r *runner) size(p *workbook.Product, d *dial, j judges, basis string, workers int) *report.Sizing {
-	now := examine(p, j.sure()) // first: what is found here guides the search
 	s := &scan{p: p, d: d, judges: j, workers: workers}
+	now := examine(p, j.sure()) // first: what is found here guides the search
+	if now.err != nil {
+		s.begin()
+	}
 	s.run()
 	fixed := s.fixed()
 	if len(fixed) > 0 {
