@@ -79,6 +79,7 @@ type chart struct {
 	levels         []level
 	bands          []band
 	spots          []spot
+	unnamed        int     // points that have no room for a label
 	size           float64 // of the type, pt
 	ends           float64 // room for the labels at the right, pt
 }
@@ -1095,7 +1096,12 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 		if p.Product.Shape == model.Spheroid {
 			m, on = pt.UpM-pt.AcrossM, pt.UpM >= 0 && pt.AcrossM >= 0 && (pt.UpM == 0 || pt.AcrossM == 0)
 		}
-		if pt.Name != "centre" && on && len(f.spots) < mostSpots {
+		if pt.Name == "centre" || !on {
+			continue
+		}
+		if len(f.spots) == mostSpots {
+			f.unnamed++
+		} else {
 			f.spots = append(f.spots, spot{pt.Name, in.Out(m), h.shown(hist.At(pt.Place, times[len(times)-1]))})
 		}
 	}

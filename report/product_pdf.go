@@ -832,7 +832,11 @@ func (x *sheet) predicted() {
 		d.heading(say("profile title"), 1, 68)
 		f.draw(d.canvas(d.left, d.y, frameWide, 54))
 		d.y += 55
-		d.text(x.profileSentence(times))
+		sentence := x.profileSentence(times)
+		if f.unnamed > 0 {
+			sentence += counted(f.unnamed, "profile unnamed")
+		}
+		d.text(sentence)
 	}
 	d.heading(say("sketch title", x.decides.called()), 1, 48)
 	piece := x.p.productOf(x.decides.history)

@@ -332,6 +332,8 @@ var words = map[string]string{
 	"profile flat":              "at %s: underside %s, middle %s, top %s",
 	"profile round":             "at %s: centre %s, surface %s",
 	"profile spheroid":          "at %s: centre %s, side %s, end of the axis %s",
+	"profile unnamed":           " %d more points are not named in the picture.",
+	"profile unnamed one":       " One more point is not named in the picture.",
 	"profile joints":            " Where a line breaks, layers touch with a contact resistance, and the temperature jumps.",
 	"sketch title":              "Section with the %s",
 	"sketch sentence":           "Calculated as a %s: %s. The cross marks the %s: %s.",

@@ -401,7 +401,7 @@ func (v *view) room(s scope, q question, cs []candidate) (float64, *model.Place)
 	if !any {
 		return math.NaN(), nil
 	}
-	return v.jointRoom(s, q, cs, least, where)
+	return least, where
 }
 
 // maybe tells by its rough course whether a spot may have a margin below least.

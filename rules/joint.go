@@ -3,8 +3,6 @@ package rules
 import (
 	"math"
 	"sort"
-
-	"slowpoint/model"
 )
 
 // Of a time that is allowed at most, two periods in a region join at the places that do not quite leave it between them: a place whose peak
@@ -91,28 +89,6 @@ func (v *view) jointsAround(s scope, q question, cs []candidate) []coordinates {
 		}
 	}
 	return places
-}
-
-// mostMoves is how often the room is looked for again at edges that have moved with it.
-const mostMoves = 3
-
-// jointRoom is the room that the places at the edges leave, K, which move as the temperatures of the limit are moved, with the place that has the
-// least; what is given where they leave more.
-func (v *view) jointRoom(s scope, q question, cs []candidate, least float64, where *model.Place) (float64, *model.Place) {
-	for range mostMoves {
-		before := least
-		for _, x := range v.joints(s, q, cs, tilt{ownK: least}, 1).places {
-			p := v.path(x.place())
-			if r := roomBy(q.measure, path{t: p.t, c: p.c}, least); r < least {
-				at := x.place()
-				least, where = r, &at
-			}
-		}
-		if least >= before-sameK || least <= 0 {
-			break
-		}
-	}
-	return least, where
 }
 
 // parted lists the pairs of neighbours of unlike patterns, the worst by their blended courses first.

@@ -93,3 +93,33 @@ func TestBandWhereTwoPeriodsJoin(t *testing.T) {
 		t.Errorf("%d longest times within the slab, %d margins: the cases do not show what they should", joined, margins)
 	}
 }
+
+// Where the margin moves From, the places at which two periods join move with it, the more of them the colder From is: the margin in K of a met
+// band brings it to its limit all the same.
+func TestRoomWhereTwoPeriodsJoin(t *testing.T) {
+	draw := rand.New(rand.NewPCG(8, 1))
+	within := func(lo, hi float64) float64 { return lo + (hi-lo)*draw.Float64() }
+	margins := 0
+	for n := range 60 {
+		h := solve(t, model.Slab, model.Size{ThicknessM: within(0.02, 0.05)}, 4, filmStep(model.Cook, math.Round(within(20, 50)), 90, 25),
+			filmStep(model.Cool, math.Round(within(60, 160)), 1, 20), filmStep(model.Reheat, math.Round(within(15, 40)), 90, 25), filmStep(model.Cool, 300, 2, 20))
+		from, allowed := within(8, 25), within(150, 350)
+		limit := func(c float64) Limit {
+			to := 95.0
+			return Limit{Kind: Band, FromC: &c, ToC: &to, TimeS: min_(allowed), Counting: Continuous}
+		}
+		f := one(t, limit(from), h)
+		if f.Verdict != Met || f.MarginK == nil {
+			continue
+		}
+		margins++
+		for _, by := range []float64{-0.02, 0.02} {
+			if moved := one(t, limit(from-*f.MarginK-by), h); (moved.Verdict == Met) != (by < 0) {
+				t.Errorf("%d: %v with From %.2f K beyond the margin of %.3f K: %s", n, moved.Verdict, by, *f.MarginK, moved.Why)
+			}
+		}
+	}
+	if margins < 10 {
+		t.Errorf("%d margins", margins)
+	}
+}
