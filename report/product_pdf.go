@@ -834,7 +834,7 @@ func (x *sheet) predicted() {
 		d.y += 55
 		sentence := x.profileSentence(times)
 		if f.unnamed > 0 {
-			sentence += counted(f.unnamed, "profile unnamed")
+			sentence += " " + counted(f.unnamed, "profile unnamed")
 		}
 		d.text(sentence)
 	}
