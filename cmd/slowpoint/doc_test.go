@@ -461,7 +461,8 @@ func probeFile(t *testing.T) {
 	for m := 0; m <= 350; m++ {
 		c := 85 - 80*math.Exp(-float64(m)/30)
 		if m > 148 { // after 2 h 13 min in the pot and 15 min of rest
-			c = 1 + 84*math.Exp(-float64(m-148)/35)
+			on := float64(m - 148)
+			c = 1 + 84*math.Exp(-on*on/(on+20)/35) // a core begins to fall smoothly
 		}
 		fmt.Fprintf(&b, "%02d:%02d:00,%.1f\n", 9+(12+m)/60, (12+m)%60, c)
 	}

@@ -125,6 +125,8 @@ func TestLeapsAreNotMet(t *testing.T) {
 		{"pulled in the chiller", away(slow(60), 31.6, 3.0, 60, 0, 0), 60, 1, "Hot tray", "cool", "", cannotTell, "faster than this food can move there"},
 		{"pulled, every 10 s, a sensor of 30 s", away(slow(10), 31.6, 3.0, 10, 30, 0), 10, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
 		{"pulled, every 10 s, a sensor of 10 s", away(slow(10), 31.6, 3.0, 10, 10, 0), 10, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
+		{"pulled, a sleeve of 1 min", away(slow(60), 63.4, 2.0, 60, 60, 0), 60, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
+		{"pulled, a sleeve of 2 min", away(slow(60), 63.4, 2.0, 60, 120, 0), 60, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
 		{"pulled, every 5 min", away(slow(300), 31.6, 3.0, 300, 0, 0), 300, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
 		{"pulled, every 5 min, of 25 mm", away(centreOf(t, 0.025, 85, 1, 6, 300, 28800), 31.6, 3.0, 300, 0, 0), 300, 1, "Thin tray", "cool", "", cannotTell, "faster than this food"},
 		{"pulled, to the degree", away(slow(60), 31.6, 3.0, 60, 0, 0), 60, 0, "Hot tray", "cool", "", cannotTell, "faster than this food"},

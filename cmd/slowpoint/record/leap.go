@@ -21,7 +21,7 @@ type Leap struct {
 	Problem     cell.Error
 }
 
-// A leap is told from a move of the food in one of three ways. All figures are our own choice; what a food can do is computed (model.Quickest) and
+// A leap is told from a move of the food in one of four ways. All figures are our own choice; what a food can do is computed (model.Quickest) and
 // held against histories of the exact model by tests.
 //
 // It begins and ends too sharply. A food smooths what its surroundings do: in up to a quarter of the time in which it settles it does not move sharply
@@ -31,6 +31,9 @@ type Leap struct {
 // doubted, which the thickness in the plan mends.
 //
 // It is faster than a known food can move: twice over, for a plan whose thickness or conductivity is off, or by any amount if it is sharp as well.
+//
+// It begins too sharply and is faster than the food can move, however it ends: a probe in a sleeve follows the air for minutes. Of a food that is not
+// known that is what the core of a slab of 20 mm does with its faces held at a temperature unknownK away.
 //
 // It is the last that was read, or the first, so that nothing shows how it ends or began. Then it must be sharp on the other side, and faster than the food can move; of
 // a food that is not known, of 10 K.
@@ -43,6 +46,9 @@ const (
 	unknownOneS = 300.0 // from a reading to the next
 	twiceOver   = 2.0
 	lastLeap    = 10.0 // K
+
+	unknownShareS = 1.851 * 1.5e-7 / (0.010 * 0.010) // model.Quickest of that slab, of a food that conducts well, 1/s
+	unknownK      = 120.0
 )
 
 // Readings have come back when, within backS, they go back by at least half of how far they were away, as fast as a leap, to within a quarter of it of
@@ -102,6 +108,8 @@ func newLeaper(log *Log, f Food) *leaper {
 			lo, hi = math.Min(lo, c), math.Max(hi, c)
 		}
 		s.mostC = f.ShareS * (hi - lo)
+	} else if f.SettleS == 0 {
+		s.mostC = unknownShareS * unknownK
 	}
 	return s
 }
@@ -190,6 +198,9 @@ func (s *leaper) isLeap(i, j int) bool {
 		if open = s.t[i]-s.t[h] < long-sameS; s.t[i]-s.t[h] >= quietTimes*long-sameS {
 			break
 		}
+	}
+	if !open && s.mostC > 0 && away > s.mostC*long+s.resK {
+		return true
 	}
 	ends := true
 	for k := j + 1; k < len(s.c); k++ {
