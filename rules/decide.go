@@ -283,6 +283,9 @@ func (v *view) candidates(s scope, q question) []candidate {
 	for _, x := range v.jointsAround(s, q, cs) { // add would drop one just beside another place, though its verdict may differ
 		put(x.place(), s.surfaceOnly)
 	}
+	for _, x := range v.closer(s, q, cs) {
+		put(x.place(), false)
+	}
 	return cs
 }
 

@@ -159,13 +159,7 @@ func (v *view) followJoint(e edge, through coordinates) (x coordinates, ok bool)
 		through[e.axis] = along
 		return through
 	}
-	out := make([]float64, len(v.c.times))
-	inner := func(along float64) bool {
-		at := on(along).place()
-		v.h.Course(at, v.c.times, out)
-		p := path{t: v.c.times, c: out, at: func(t float64) float64 { return v.h.At(at, t) }}
-		return v.pattern(p, e.joint.region) == e.joint.pattern
-	}
+	inner := func(along float64) bool { return v.pattern(v.exactly(on(along)), e.joint.region) == e.joint.pattern }
 	a, b := e.in[e.axis], e.out[e.axis]
 	in, beyond := inner(a), inner(b)
 	for n := 0; n < 4 && in == beyond; n++ {
