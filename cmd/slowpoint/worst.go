@@ -397,23 +397,29 @@ func (s *search) inner(i int, typed []rules.Finding) []float64 {
 	if strings.HasSuffix(sp.Of.Name, "temperature") {
 		within = []int{parts / 4, parts / 2, parts * 3 / 4}
 	}
-	minus, plus := s.p.Span(i)
-	var out []float64
-	for _, side := range []struct {
-		sign int
-		by   float64
-	}{{-1, minus}, {1, plus}} {
-		if !(side.by > 0) {
-			continue
-		}
+	return s.along(i, func(sign int, by float64) []int {
 		here := slices.Clone(within)
 		for k := range typed {
-			here = append(here, s.starting(i, side.sign, side.by, typed[k].Limit)...)
+			here = append(here, s.starting(i, sign, by, typed[k].Limit)...)
 		}
+		return here
+	})
+}
+
+// along gives the places of a spread between its ends at some parts of the way to each, which lies so far off on a side.
+func (s *search) along(i int, at func(sign int, by float64) []int) []float64 {
+	var out []float64
+	minus, plus := s.p.Span(i)
+	for k, by := range []float64{minus, plus} {
+		sign := 2*k - 1
+		if !(by > 0) {
+			continue
+		}
+		here := at(sign, by)
 		slices.Sort(here)
 		for _, n := range slices.Compact(here) {
 			if n > 0 && n < parts {
-				out = append(out, float64(side.sign*n)/parts)
+				out = append(out, float64(sign*n)/parts)
 			}
 		}
 	}
@@ -432,22 +438,7 @@ func (s *search) starting(i, sign int, by float64, l *rules.Limit) []int {
 
 // beside are the places of a spread, between its ends, that starting gives.
 func (s *search) beside(i int, l *rules.Limit) []float64 {
-	var out []float64
-	minus, plus := s.p.Span(i)
-	for _, side := range []struct {
-		sign int
-		by   float64
-	}{{-1, minus}, {1, plus}} {
-		if !(side.by > 0) {
-			continue
-		}
-		for _, n := range s.starting(i, side.sign, side.by, l) {
-			if n > 0 && n < parts {
-				out = append(out, float64(side.sign*n)/parts)
-			}
-		}
-	}
-	return out
+	return s.along(i, func(sign int, by float64) []int { return s.starting(i, sign, by, l) })
 }
 
 // slowing gives the ends at which heat moves slowly through a food, by quantity: 1 is Plus. Those of temperatures and durations depend on

@@ -60,7 +60,7 @@ const (
 )
 
 // A probe was put in, and not pulled out, where the file begins with readings that all lie within putInK of each other at a temperature of
-// rooms, for no longer than putInS, and none of water's boiling follows. Such a leap is told, and nothing is doubted. Own choice.
+// rooms, for no longer than putInS, and no reading of 100 °C or more follows. Such a leap is told, and nothing is doubted. Own choice.
 const (
 	putInS            = 600.0
 	putInK            = 2.0

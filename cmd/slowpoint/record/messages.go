@@ -107,7 +107,7 @@ var (
 	zoneLost     = saying{"has no zone, but the times above have one", "export the record again with times of one form"}
 	zoneCame     = saying{"has a zone, but the times above have none", "export the record again with times of one form"}
 	backHour     = saying{"is an hour or so before the time of {1}, {2}: the clock of the logger was set back, so an hour is there twice", "export the record in UTC, or keep the readings up to here or from here on"}
-	back         = saying{"is before the time of {1}, {2}", "export the record again, sorted by time"}
+	back         = saying{"is before the time of {1}, {2}", "if a clock of 12 hours or a date that stays the same turned over there, export it with AM or PM and the date; otherwise sorted by time"}
 	sameTime     = saying{"is the time of {1} too, with another reading ({2} and {3})", "take one of the two out, or, where several sensors are listed below each other, export them in columns of their own"}
 	merged       = saying{"is the time of {1} too, with the same reading; the two are one reading", ""}
 	descending   = saying{"The newest reading comes first; they are put in order of time", ""}
