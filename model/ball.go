@@ -27,6 +27,9 @@ func (s *spheroidMap) place(x coord) Place {
 	return Place{UpM: s.a * x[0] * x[1], AcrossM: s.b * x[0] * math.Sqrt(1-x[1]*x[1])}
 }
 
+// reach is the greatest half axis, m.
+func (s *spheroidMap) reach() float64 { return max(s.a, s.b) }
+
 // surfaceShare is the surface at μ by volume of the spheroid, 1/m: its integral over μ from 0 to 1 is surface by volume.
 func (s *spheroidMap) surfaceShare(mu float64) float64 {
 	return 3 / (s.a * s.b) * math.Hypot(s.a*math.Sqrt(1-mu*mu), s.b*mu)

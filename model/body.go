@@ -481,6 +481,9 @@ func (h *History) look() *Scan {
 		sc.C[i] = all[i*m : (i+1)*m]
 		x := b.node(i)
 		sc.Spots[i] = Spot{Place: b.place(x), Surface: b.surface(x)}
+		if sc.Spots[i].Axes = h.Axes(sc.Spots[i].Place); b.ball != nil { // exactly the same of all nodes on a line
+			sc.Spots[i].Axes = Axes{x[0] * b.ball.reach(), x[1] * b.ball.reach()}
+		}
 	}
 	for k, t := range sc.TimesS {
 		h.field.at(t).grid(b.buf)

@@ -85,6 +85,28 @@ func (h *History) EndS() float64 {
 type Spot struct {
 	Place
 	Surface bool // it lies on the surface
+	Axes    Axes
+}
+
+// Axes are the coordinates of a place along which the spots of a scan are a grid and the food has no corners missing: Up, Across and Along in m, and in
+// a spheroid the share of the way out and the one from the equator to the poles, both times its greatest half axis, m.
+type Axes [3]float64
+
+// Axes gives the coordinates of a place; one outside a spheroid is moved to its surface.
+func (h *History) Axes(p Place) Axes {
+	if b := h.body; b != nil && b.ball != nil {
+		x := b.coord(p)
+		return Axes{x[0] * b.ball.reach(), x[1] * b.ball.reach()}
+	}
+	return Axes{p.UpM, p.AcrossM, p.AlongM}
+}
+
+// PlaceAt is the inverse of Axes.
+func (h *History) PlaceAt(x Axes) Place {
+	if b := h.body; b != nil && b.ball != nil {
+		return b.place(coord{x[0] / b.ball.reach(), x[1] / b.ball.reach()})
+	}
+	return Place{UpM: x[0], AcrossM: x[1], AlongM: x[2]}
 }
 
 // Scan is a first look at a history: places close enough that the least favourable one lies beside one of them,

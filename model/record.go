@@ -40,7 +40,7 @@ func NewRecord(spans []Span, traces []Trace, medium *Trace) (*History, error) {
 	scan := &Scan{}
 	for _, tr := range traces {
 		h.Points = append(h.Points, tr.Point)
-		scan.Spots = append(scan.Spots, Spot{Place: tr.Place, Surface: tr.Name == "surface"})
+		scan.Spots = append(scan.Spots, Spot{Place: tr.Place, Surface: tr.Name == "surface", Axes: Axes{tr.Place.UpM, tr.Place.AcrossM, tr.Place.AlongM}})
 		scan.TimesS = append(scan.TimesS, tr.TimesS...)
 	}
 	for _, sp := range spans {

@@ -13,9 +13,10 @@ var Band = &Kind{Name: "band", Unit: "min", Needs: [][]string{{"From"}, {"To"}, 
 func judgeBand(v *view) Finding {
 	l := v.l
 	q := question{unit: "min", need: *l.TimeS / 60}
-	q.region = func(t tilt) region { return between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK) }
+	in := func(t tilt) region { return between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK) }
+	q.traits = func(t tilt) []trait { return []trait{periods(v.stages, in(t))} }
 	q.measure = func(p path, t tilt) outcome {
-		r := q.region(t)
+		r := in(t)
 		if t.bound {
 			p = v.cappedFrom(p, (r.lo+r.hi)/2)
 		}

@@ -17,7 +17,7 @@ const (
 )
 
 // closer adds what such a look finds; nothing where the worst candidate is far from what is required, or missed already.
-func (v *view) closer(s scope, q question, cs []candidate) []coordinates {
+func (v *view) closer(s scope, q question, cs []candidate) []model.Axes {
 	if v.h.Recorded || s.surfaceOnly || len(s.spots) == 0 || math.IsNaN(q.need) {
 		return nil
 	}
@@ -31,11 +31,10 @@ func (v *view) closer(s scope, q question, cs []candidate) []coordinates {
 	if o.verdict == NotMet || o.verdict == NotApplicable || !(math.Abs(o.value-q.need) <= closerShare*math.Abs(q.need)) {
 		return nil
 	}
-	v.c.neighbours() // fills the marks
-	if n := len(v.c.marks[0]) * len(v.c.marks[1]) * len(v.c.marks[2]); n != len(v.c.spots) && !v.oval() {
-		return nil // no grid
+	if !v.gridded() {
+		return nil
 	}
-	starts := []coordinates{coordinatesOf(cs[best].place)}
+	starts := []model.Axes{v.h.Axes(cs[best].place)}
 	spots := append([]int(nil), s.spots...)
 	by := make([]outcome, len(v.c.spots))
 	for _, i := range spots {
@@ -43,28 +42,31 @@ func (v *view) closer(s scope, q question, cs []candidate) []coordinates {
 	}
 	sort.SliceStable(spots, func(a, b int) bool { return worse(by[spots[a]], by[spots[b]]) })
 	for _, i := range spots[:min(closerSpots, len(spots))] {
-		starts = append(starts, coordinatesOf(v.c.spots[i].Place))
+		starts = append(starts, v.c.spots[i].Axes)
 	}
-	var found []coordinates
+	var found []model.Axes
 	for _, x := range starts {
-		found = append(found, v.stepwise(q, x))
+		found = append(found, v.stepwise(q.measure, x, tilt{rank: true}))
 	}
 	return found
 }
 
-// stepwise goes from a place to less favourable ones, along one axis at a time.
-func (v *view) stepwise(q question, x coordinates) coordinates {
-	score := func(x coordinates) outcome { return q.measure(v.exactly(x), tilt{rank: true}) }
+// gridded tells whether the spots are a grid, where two layers meet with two in one place, and fills the marks.
+func (v *view) gridded() bool {
+	v.c.neighbours()
+	return len(v.c.marks[0])*len(v.c.marks[1])*len(v.c.marks[2]) <= len(v.c.spots)
+}
+
+// stepwise goes from a place to less favourable ones at a tilt, along one axis at a time.
+func (v *view) stepwise(m measure, x model.Axes, t tilt) model.Axes {
+	score := func(x model.Axes) outcome { return m(v.exactly(x), t) }
 	best := score(x)
-	steps := coordinates{}
+	steps := model.Axes{}
 	for axis, marks := range v.c.marks {
 		if last := len(marks) - 1; last > 0 {
 			n := min(max(sort.SearchFloat64s(marks, x[axis]), 1), last)
 			steps[axis] = marks[n] - marks[n-1]
 		}
-	}
-	if v.oval() { // its spots are no grid
-		steps = coordinates{v.h.Product.Size.ThicknessM / 40, v.h.Product.Size.DiameterM / 40}
 	}
 	for share := 0.5; share*max(steps[0], steps[1], steps[2]) > closerM; share /= 2 {
 		for moved := true; moved; {
@@ -72,7 +74,7 @@ func (v *view) stepwise(q question, x coordinates) coordinates {
 			for axis, d := range steps {
 				for _, sign := range []float64{-1, 1} {
 					y := x
-					if y[axis] = v.keptIn(x, axis, x[axis]+sign*share*d); y[axis] == x[axis] {
+					if y[axis] = v.c.inside(axis, x[axis]+sign*share*d); y[axis] == x[axis] {
 						continue
 					}
 					if o := score(y); worse(o, best) {
@@ -85,24 +87,9 @@ func (v *view) stepwise(q question, x coordinates) coordinates {
 	return x
 }
 
-// oval tells whether the food is a spheroid, whose outline bends in both of its directions.
-func (v *view) oval() bool { return v.h.Product != nil && v.h.Product.Shape == model.Spheroid }
-
-// keptIn is the coordinate within the food that is nearest to one on the line along an axis through a place.
-func (v *view) keptIn(x coordinates, axis int, along float64) float64 {
-	along = v.c.inside(axis, along)
-	if !v.oval() || axis > 1 {
-		return along
-	}
-	half := coordinates{v.h.Product.Size.ThicknessM / 2, v.h.Product.Size.DiameterM / 2}
-	other := x[1-axis] / half[1-axis]
-	reach := half[axis] * math.Sqrt(math.Max(0, 1-other*other))
-	return math.Max(-reach, math.Min(reach, along))
-}
-
 // exactly is the course of a place at the instants of the scan, exact wherever it is asked between them.
-func (v *view) exactly(x coordinates) path {
-	at := x.place()
+func (v *view) exactly(x model.Axes) path {
+	at := v.h.PlaceAt(x)
 	p := path{t: v.c.times, c: make([]float64, len(v.c.times)), at: func(t float64) float64 { return v.h.At(at, t) }}
 	v.h.Course(at, p.t, p.c)
 	return p

@@ -15,6 +15,9 @@ func judgeCool(v *view) Finding {
 	l := v.l
 	ws := v.windows()
 	q := question{unit: "min", need: *l.TimeS / 60, measure: worstOf(ws, "cool nowhere", v.coolWindow)}
+	q.traits = func(t tilt) []trait {
+		return append(v.clocks(ws, t), periods(v.spans(), v.cold(t)))
+	}
 	q.room = func(p path) float64 {
 		least := math.NaN()
 		for _, w := range ws {
@@ -26,6 +29,9 @@ func judgeCool(v *view) Finding {
 	}
 	return v.judgePlaces(q)
 }
+
+// cold is where a place has to come to, the limit's temperature moved against it.
+func (v *view) cold(t tilt) region { return v.l.coldSide(*v.l.ToC - t.errK - t.ownK) }
 
 // worstOf measures the least favourable of the windows that count; word is said where none does.
 func worstOf(ws []window, word string, one func(path, window, tilt) outcome) measure {
@@ -67,6 +73,32 @@ func (v *view) clockStart(p path, w window, t tilt) (start float64, ok, open boo
 		start = v.earliest(q, top, level, start)
 	}
 	return start, true, false
+}
+
+// clocks are the traits of a clock that starts by a fall, one for each window: how often a place fell to the level before the clock starts. Where
+// two peaks of a place are equally high, it starts after the one or after the other.
+func (v *view) clocks(ws []window, t tilt) []trait {
+	if !v.l.clocked() {
+		return nil
+	}
+	var all []trait
+	level := v.l.crossedC() + t.errK
+	for _, w := range ws {
+		all = append(all, func(p path) int {
+			start, ok, _ := v.clockStart(p, w, t)
+			if !ok {
+				return traitless
+			}
+			q, falls := p.in(w.interval), 0
+			for i := 0; i+1 < len(q.c) && q.t[i+1] < start; i++ {
+				if q.c[i] > level && q.c[i+1] <= level {
+					falls++
+				}
+			}
+			return falls
+		})
+	}
+	return all
 }
 
 // fallsTo finds the first fall to a level from a knot on; that knot's instant where it is no higher.
@@ -113,7 +145,7 @@ func (v *view) coolWindow(p path, w window, t tilt) outcome {
 	if !ok {
 		return nowhere("cool nowhere")
 	}
-	cold := l.coldSide(*l.ToC - t.errK - t.ownK)
+	cold := v.cold(t)
 	q := p.in(w.interval)
 	last := len(q.c) - 1
 	o := none(NotMet, "cool late")
@@ -167,7 +199,7 @@ func (v *view) coolOpen(o outcome, q path, w window, t tilt) outcome {
 		}
 		still := "still"
 		for i, c := range q.c { // it was down, and did not stay there
-			if q.t[i] > o.start && l.coldSide(*l.ToC-t.errK-t.ownK).holds(c) {
+			if q.t[i] > o.start && v.cold(t).holds(c) {
 				still = "again"
 			}
 		}

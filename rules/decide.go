@@ -62,7 +62,7 @@ type question struct {
 	rises   bool    // a clock that starts at a crossing does so on the way up
 	adds    bool    // what was reached before a bound begins counts all the same
 
-	region func(t tilt) region // of a time that is allowed at most, where it counts; nil: another question
+	traits func(t tilt) []trait // of a course: where one changes the value may leap (see joint.go); nil: it is even everywhere
 }
 
 // rank orders verdicts from harmless to worst.
@@ -125,6 +125,9 @@ func (v *view) judgePlaces(q question) Finding {
 	}
 	if f.Verdict != NotApplicable {
 		least, at := v.room(s, q, cs)
+		if o.verdict == Met {
+			least, at = v.leastRoom(s, q, cs, least, at)
+		}
 		f.MarginK = finite(least)
 		if at != nil && f.MarginK != nil && f.Place != nil && !near(*at, *f.Place) {
 			if name := v.placeName(*at); name != f.PlaceName {
@@ -276,15 +279,15 @@ func (v *view) candidates(s scope, q question) []candidate {
 	}
 	for _, e := range v.edges(s, q, cs) {
 		n := len(cs)
-		if add(e.at.place(), s.surfaceOnly); len(cs) > n {
+		if add(v.h.PlaceAt(e.at), s.surfaceOnly); len(cs) > n {
 			cs[n].edge = &e
 		}
 	}
 	for _, x := range v.jointsAround(s, q, cs) { // add would drop one just beside another place, though its verdict may differ
-		put(x.place(), s.surfaceOnly)
+		put(v.h.PlaceAt(x), s.surfaceOnly)
 	}
 	for _, x := range v.closer(s, q, cs) {
-		put(x.place(), false)
+		put(v.h.PlaceAt(x), false)
 	}
 	return cs
 }

@@ -24,13 +24,13 @@ const probeM = 6e-4
 
 // onEdge is a place on an edge, and which way the counting places lie on one of its axes: 1 or -1.
 type onEdge struct {
-	at     coordinates
+	at     model.Axes
 	axis   int
 	inward float64
 }
 
 // on makes the place of an edge that x is.
-func (e *edge) on(x coordinates) onEdge {
+func (e *edge) on(x model.Axes) onEdge {
 	return onEdge{x, e.axis, math.Copysign(1, e.in[e.axis]-e.out[e.axis])}
 }
 
@@ -38,7 +38,7 @@ func (e *edge) on(x coordinates) onEdge {
 func (v *view) probed(edge candidate, q question) (candidate, bool) {
 	x := edge.edge.at
 	x[edge.edge.axis] = v.c.inside(edge.edge.axis, x[edge.edge.axis]+edge.edge.inward*probeM)
-	c := candidate{place: x.place(), surface: edge.surface, path: v.path(x.place()), edge: edge.edge}
+	c := candidate{place: v.h.PlaceAt(x), surface: edge.surface, path: v.path(v.h.PlaceAt(x)), edge: edge.edge}
 	c.nominal = q.measure(c.path, tilt{})
 	t := v.unfavourable()
 	t.rank = true
@@ -63,7 +63,7 @@ const mostEdges = 2
 
 // edge is a crossing of the edge between two neighbours along an axis: one counts in a window, the other does not.
 type edge struct {
-	in, out coordinates
+	in, out model.Axes
 	axis    int
 	level   float64 // the peak at the edge, °C
 	t       tilt
@@ -71,14 +71,6 @@ type edge struct {
 	lo, hi  int     // between which instants of the scan the two have their peaks, and some more
 	first   outcome // of the scanned courses, blended so that the peak just counts
 	joint   *joint  // an edge between places of unlike numbers of periods, not one of those that count
-}
-
-// coordinates are Up, Across and Along of a place, m.
-type coordinates [3]float64
-
-func coordinatesOf(p model.Place) coordinates { return coordinates{p.UpM, p.AcrossM, p.AlongM} }
-func (x coordinates) place() model.Place {
-	return model.Place{UpM: x[0], AcrossM: x[1], AlongM: x[2]}
 }
 
 // edges finds places at the edges of those that count for a clock, in each window: along the axes between neighbouring spots. The
@@ -104,13 +96,13 @@ func (v *view) edges(s scope, q question, cs []candidate) []onEdge {
 				break
 			}
 			t := tilt{rank: true, errK: v.errK * float64(n), edge: n > 0} // the unfavourable reading counts more places
-			var worst coordinates
+			var worst model.Axes
 			var by edge
 			most := math.Inf(-1)
 			for _, e := range v.paired(pk, within, w, level, t, q, cs) {
 				if x, ok := v.follow(e, e.in); ok {
 					found = append(found, e.on(x))
-					if bad := q.measure(v.path(x.place()), t).bad; bad > most {
+					if bad := q.measure(v.path(v.h.PlaceAt(x)), t).bad; bad > most {
 						worst, by, most = x, e, bad
 					}
 				}
@@ -173,7 +165,7 @@ func (v *view) paired(pk peaks, within []bool, w window, level float64, t tilt, 
 		if !(within[i] && within[k] && top[i] > level && top[k] <= level) {
 			continue
 		}
-		e := edge{in: coordinatesOf(v.c.spots[i].Place), out: coordinatesOf(v.c.spots[k].Place), axis: pair.axis, level: level, t: t, w: w,
+		e := edge{in: v.c.spots[i].Axes, out: v.c.spots[k].Axes, axis: pair.axis, level: level, t: t, w: w,
 			lo: max(pk.first, min(peak[i], peak[k])-2), hi: min(pk.last, max(peak[i], peak[k])+2)}
 		if e.first = q.measure(v.c.blend(i, k, (level-top[k])/(top[i]-top[k]), w, level), t); !worse(bar, e.first) {
 			es = append(es, e)
@@ -218,16 +210,16 @@ func (c *courses) blend(i, k int, share float64, w window, level float64) path {
 // follow finds the place of an edge on the line along its axis through a place: where the peak in the window is edgeK above the
 // level, by regula falsi (Illinois). It looks further out on either side where the two neighbours do not bracket the edge there;
 // ok is false where the line does not cross it within the food.
-func (v *view) follow(e edge, through coordinates) (x coordinates, ok bool) {
+func (v *view) follow(e edge, through model.Axes) (x model.Axes, ok bool) {
 	if e.joint != nil {
 		return v.followJoint(e, through)
 	}
 	out := make([]float64, len(v.c.times))
-	on := func(along float64) coordinates {
+	on := func(along float64) model.Axes {
 		through[e.axis] = along
 		return through
 	}
-	over := func(along float64) float64 { return v.peakOf(e, on(along).place(), out) - e.level - edgeK }
+	over := func(along float64) float64 { return v.peakOf(e, v.h.PlaceAt(on(along)), out) - e.level - edgeK }
 	a, b := e.in[e.axis], e.out[e.axis]
 	fa, fb := over(a), over(b)
 	for n := 0; n < 4 && (fa <= 0 || fb > 0); n++ {
@@ -292,11 +284,11 @@ func (c *courses) inside(axis int, along float64) float64 {
 
 // slide moves along an edge, from a place on it, to where the limit is least favourable: a parabola over each of the other axes,
 // finer each time.
-func (v *view) slide(e edge, x coordinates, q question, surfaceOnly bool) coordinates {
-	if n := len(v.c.marks[0]) * len(v.c.marks[1]) * len(v.c.marks[2]); n != len(v.c.spots) {
-		return x // no grid: its outline bends
+func (v *view) slide(e edge, x model.Axes, q question, surfaceOnly bool) model.Axes {
+	if !v.gridded() {
+		return x
 	}
-	score := func(x coordinates) float64 { return q.measure(v.path(x.place()), e.t).bad }
+	score := func(x model.Axes) float64 { return q.measure(v.path(v.h.PlaceAt(x)), e.t).bad }
 	for axis, marks := range v.c.marks {
 		last := len(marks) - 1
 		if axis == e.axis || last == 0 || surfaceOnly && (x[axis] == marks[last] || x[axis] == marks[0] && marks[0] < 0) {
@@ -345,13 +337,13 @@ func (c *courses) neighbours() []neighbour {
 	c.pairs = []neighbour{}
 	order := make([]int, len(c.spots))
 	for axis := range c.marks {
-		key := func(i int) coordinates { // the two other coordinates first
-			x := coordinatesOf(c.spots[i].Place)
-			return coordinates{x[(axis+1)%3], x[(axis+2)%3], x[axis]}
+		key := func(i int) model.Axes { // the two other coordinates first
+			x := c.spots[i].Axes
+			return model.Axes{x[(axis+1)%3], x[(axis+2)%3], x[axis]}
 		}
 		for i, s := range c.spots {
 			order[i] = i
-			c.marks[axis] = append(c.marks[axis], coordinatesOf(s.Place)[axis])
+			c.marks[axis] = append(c.marks[axis], s.Axes[axis])
 		}
 		c.marks[axis] = rising(c.marks[axis])
 		sort.SliceStable(order, func(a, b int) bool {

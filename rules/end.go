@@ -26,6 +26,9 @@ func judgeEnd(v *view) Finding {
 		}
 		return v.due(p, t)
 	}
+	if l.TimeS != nil {
+		q.traits = func(t tilt) []trait { return v.clocks(v.windows(), t) }
+	}
 	q.room = func(p path) float64 {
 		least := math.NaN()
 		for _, t := range instants(p, tilt{}) {

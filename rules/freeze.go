@@ -8,6 +8,9 @@ var FreezeHold = &Kind{Name: "freeze", Unit: "min", Needs: [][]string{{"From"}, 
 func judgeFreeze(v *view) Finding {
 	l := v.l
 	q := question{unit: "min", need: *l.SecondS / 60}
+	chilled := func(t tilt) region { return l.coldSide(*l.FromC - t.errK) }
+	frozen := func(t tilt) region { return l.coldSide(*l.ToC - t.errK - t.ownK) }
+	q.traits = func(t tilt) []trait { return []trait{periods(v.stages, chilled(t)), periods(v.stages, frozen(t))} }
 	q.measure = func(p path, t tilt) outcome {
 		first, second := "freeze first", "freeze"
 		if *l.TimeS == 0 {
@@ -15,19 +18,18 @@ func judgeFreeze(v *view) Finding {
 		}
 		o := none(NotMet, first)
 		o.value, o.margin = 0, -*l.SecondS
-		o.bad = neverBad - p.deepest(v.stages, l.coldSide(*l.FromC-t.errK))
+		o.bad = neverBad - p.deepest(v.stages, chilled(t))
 		for n, iv := range v.stages {
 			q := p.in(iv)
-			done, ok := q.reach(l.coldSide(*l.FromC-t.errK), iv.a, *l.TimeS)
+			done, ok := q.reach(chilled(t), iv.a, *l.TimeS)
 			if !ok {
 				continue
 			}
-			cold := l.coldSide(*l.ToC - t.errK - t.ownK)
-			held := v.after(p, n, done, cold)
+			held := v.after(p, n, done, frozen(t))
 			o.word = second
 			o.value, o.bad, o.margin = held.s/60, -held.s/60, held.s-*l.SecondS
 			if held.s == 0 {
-				o.bad = -p.deepest(v.stages, cold)
+				o.bad = -p.deepest(v.stages, frozen(t))
 			}
 			o.start, o.end, o.at = done, held.to, held.to
 			o.holes = holes{"value": lasting(held.s, -1)}

@@ -8,9 +8,20 @@ var HeatWithin = &Kind{Name: "heat", Unit: "min", Needs: [][]string{{"To"}, {"Ti
 	Help: "reaches To (and stays Second time) within Time of the clock", judge: judgeHeat}
 
 func judgeHeat(v *view) Finding {
-	return v.judgePlaces(question{unit: "min", need: *v.l.TimeS / 60, warm: true, rises: true, adds: true,
-		measure: worstOf(v.windows(), "heat nowhere", v.heatWindow)})
+	ws := v.windows()
+	q := question{unit: "min", need: *v.l.TimeS / 60, warm: true, rises: true, adds: true, measure: worstOf(ws, "heat nowhere", v.heatWindow)}
+	q.traits = func(t tilt) []trait {
+		all := []trait{periods(v.spans(), v.hot(t))}
+		if v.l.clocked() {
+			all = append(all, periods(v.spans(), atOrAbove(v.l.crossedC()-t.errK)))
+		}
+		return all
+	}
+	return v.judgePlaces(q)
 }
+
+// hot is where a place has to come to, the limit's temperature moved against it.
+func (v *view) hot(t tilt) region { return v.l.warmSide(*v.l.ToC + t.errK + t.ownK) }
 
 // heatStart is when the clock of a window starts for a place: with the stage, or when it first is at the crossing temperature.
 func (v *view) heatStart(q path, w window, errK float64) (float64, bool) {
@@ -43,11 +54,10 @@ func (v *view) heatWindow(p path, w window, t tilt) outcome {
 	}
 	o := none(NotMet, "heat late")
 	o.start, o.slow = start, true
-	done, reached := q.reach(l.warmSide(*l.ToC+t.errK+t.ownK), start, second)
+	done, reached := q.reach(v.hot(t), start, second)
 	if !reached {
 		ran := w.b - start
-		to := l.warmSide(*l.ToC + t.errK + t.ownK)
-		o.value, o.bad, o.margin, o.at = ran/60, neverBad-q.deepest([]interval{w.interval}, to), *l.TimeS-ran, w.b
+		o.value, o.bad, o.margin, o.at = ran/60, neverBad-q.deepest([]interval{w.interval}, v.hot(t)), *l.TimeS-ran, w.b
 		o.holes = holes{"value": lasting(ran, -1), "stage": v.stageNames()}
 		switch {
 		case !l.within(ran, *l.TimeS):

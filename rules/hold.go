@@ -19,6 +19,7 @@ func judgeHold(v *view) Finding {
 		return v.judgePlaces(v.reached())
 	}
 	q := question{unit: "min", need: *l.TimeS / 60, warm: l.ToC == nil, needs: true, adds: true}
+	q.traits = func(t tilt) []trait { return []trait{periods(v.stages, v.heldRegion(t))} }
 	q.measure = func(p path, t tilt) outcome {
 		r := v.heldRegion(t)
 		sp := p.stay(v.stages, r)

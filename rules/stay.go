@@ -63,7 +63,7 @@ func (v *view) excursion(level, sign float64) question {
 	l := v.l
 	q := question{unit: "min", need: *l.TimeS / 60, warm: sign > 0}
 	strict := l.Compare == MoreThan || l.Compare == LessThan
-	q.region = func(t tilt) region {
+	beyond := func(t tilt) region {
 		switch {
 		case sign > 0 && strict:
 			return atOrBelow(level + t.errK + t.ownK)
@@ -74,12 +74,13 @@ func (v *view) excursion(level, sign float64) question {
 		}
 		return above(level - t.errK - t.ownK)
 	}
+	q.traits = func(t tilt) []trait { return []trait{periods(v.stages, beyond(t))} }
 	q.measure = func(p path, t tilt) outcome {
 		c := v.counting(t)
 		if c == NotCounted {
 			c = Continuous // Time is the longest excursion
 		}
-		out, word := q.region(t), "out above"
+		out, word := beyond(t), "out above"
 		if sign < 0 {
 			word = "out below"
 		}

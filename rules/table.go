@@ -11,6 +11,13 @@ func judgeTable(v *view) Finding {
 	l := v.l
 	rows := sortedRows(l.Table)
 	q := question{unit: "1", need: 1, warm: true, needs: true, adds: true}
+	q.traits = func(t tilt) []trait {
+		var all []trait
+		for _, row := range rows {
+			all = append(all, periods(v.stages, v.rowRegion(row, t)))
+		}
+		return all
+	}
 	q.measure = func(p path, t tilt) outcome {
 		best := none(NotMet, "table missed")
 		best.bad, best.value = math.Inf(1), 0
@@ -52,9 +59,12 @@ func (v *view) shown(best outcome, p path, rows []*Row, top float64) outcome {
 // that it changes no row.
 const rowTie = 1e-4
 
+// rowRegion is where a place has to be for a row, its temperature moved against it.
+func (v *view) rowRegion(row *Row, t tilt) region { return v.l.warmSide(row.C + t.errK + t.ownK) }
+
 // row judges one row at one place, whose warmest temperature is top.
 func (v *view) row(p path, t tilt, row *Row, top float64) outcome {
-	r := v.l.warmSide(row.C + t.errK + t.ownK)
+	r := v.rowRegion(row, t)
 	o := none(NotMet, "table missed")
 	o.row, o.slow = row, true
 	if !t.rank {
