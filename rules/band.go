@@ -14,6 +14,7 @@ func judgeBand(v *view) Finding {
 	l := v.l
 	q := question{unit: "min", need: *l.TimeS / 60}
 	in := func(t tilt) region { return between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK) }
+	q.risks = func(t tilt) []risk { return []risk{v.exposedTurns().risk(v.stages, in(t))} }
 	q.traits = func(t tilt) []trait { return []trait{periods(v.stages, in(t))} }
 	q.measure = func(p path, t tilt) outcome {
 		r := in(t)
@@ -27,6 +28,11 @@ func judgeBand(v *view) Finding {
 		return o
 	}
 	return v.judgePlaces(q)
+}
+
+// exposedTurns are the turns that matter for a time that is allowed at most.
+func (v *view) exposedTurns() turns {
+	return turns{joining: true, breaking: v.single(), another: v.single()}
 }
 
 // exposed judges a time that is allowed at most.

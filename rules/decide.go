@@ -62,6 +62,7 @@ type question struct {
 	rises   bool    // a clock that starts at a crossing does so on the way up
 	adds    bool    // what was reached before a bound begins counts all the same
 
+	risks  func(t tilt) []risk  // how far a course is from such a leap between two spots (see risk.go)
 	traits func(t tilt) []trait // of a course: where one changes the value may leap (see joint.go); nil: it is even everywhere
 }
 
@@ -157,6 +158,17 @@ func (v *view) judgePlaces(q question) Finding {
 
 // unfavourable is the tilt of the unfavourable end of the error band.
 func (v *view) unfavourable() tilt { return tilt{errK: v.errK, edge: true} }
+
+// ends are the tilts that decide: none, and those of the error.
+func (v *view) ends() []tilt {
+	switch {
+	case v.errK == 0:
+		return []tilt{{}}
+	case v.single():
+		return []tilt{{}, v.unfavourable(), {errK: -v.errK}}
+	}
+	return []tilt{{}, v.unfavourable()}
+}
 
 // mayApply looks at a limit that applies to no place as calculated, but to one at the unfavourable end: a place whose highest
 // temperature is that at which the clock starts. It gives what is not met there, and why that cannot be told.
@@ -285,6 +297,11 @@ func (v *view) candidates(s scope, q question) []candidate {
 	}
 	for _, x := range v.jointsAround(s, q, cs) { // add would drop one just beside another place, though its verdict may differ
 		put(v.h.PlaceAt(x), s.surfaceOnly)
+	}
+	for _, t := range v.ends() {
+		for _, x := range v.risky(s, q, t) {
+			put(v.h.PlaceAt(x), false)
+		}
 	}
 	for _, x := range v.closer(s, q, cs) {
 		put(v.h.PlaceAt(x), false)

@@ -10,7 +10,20 @@ func judgeFreeze(v *view) Finding {
 	q := question{unit: "min", need: *l.SecondS / 60}
 	chilled := func(t tilt) region { return l.coldSide(*l.FromC - t.errK) }
 	frozen := func(t tilt) region { return l.coldSide(*l.ToC - t.errK - t.ownK) }
-	q.traits = func(t tilt) []trait { return []trait{periods(v.stages, chilled(t)), periods(v.stages, frozen(t))} }
+	q.risks = func(t tilt) []risk {
+		all := []risk{turns{breaking: true}.risk(v.stages, frozen(t)), turns{breaking: true}.risk(v.stages, chilled(t))}
+		for _, iv := range v.stages {
+			all = append(all, tooShort(chilled(t), func(p path) (float64, path, bool) { return iv.a, p.in(iv), true }, *l.TimeS))
+		}
+		return all
+	}
+	q.traits = func(t tilt) []trait {
+		all := []trait{periods(v.stages, chilled(t)), periods(v.stages, frozen(t))}
+		for _, iv := range v.stages {
+			all = append(all, func(p path) int { return p.in(iv).attempts(chilled(t), iv.a, *l.TimeS) })
+		}
+		return all
+	}
 	q.measure = func(p path, t tilt) outcome {
 		first, second := "freeze first", "freeze"
 		if *l.TimeS == 0 {

@@ -10,10 +10,31 @@ var HeatWithin = &Kind{Name: "heat", Unit: "min", Needs: [][]string{{"To"}, {"Ti
 func judgeHeat(v *view) Finding {
 	ws := v.windows()
 	q := question{unit: "min", need: *v.l.TimeS / 60, warm: true, rises: true, adds: true, measure: worstOf(ws, "heat nowhere", v.heatWindow)}
+	q.risks = func(t tilt) []risk {
+		all := []risk{turns{breaking: true}.risk(v.spans(), v.hot(t))}
+		for _, w := range ws {
+			all = append(all, tooShort(v.hot(t), func(p path) (float64, path, bool) {
+				q := p.in(w.interval)
+				start, ok := v.heatStart(q, w, t.errK)
+				return start, q, ok
+			}, v.second()))
+		}
+		return all
+	}
 	q.traits = func(t tilt) []trait {
 		all := []trait{periods(v.spans(), v.hot(t))}
 		if v.l.clocked() {
 			all = append(all, periods(v.spans(), atOrAbove(v.l.crossedC()-t.errK)))
+		}
+		for _, w := range ws {
+			all = append(all, func(p path) int {
+				q := p.in(w.interval)
+				start, ok := v.heatStart(q, w, t.errK)
+				if !ok {
+					return traitless
+				}
+				return q.attempts(v.hot(t), start, v.second())
+			})
 		}
 		return all
 	}
@@ -22,6 +43,14 @@ func judgeHeat(v *view) Finding {
 
 // hot is where a place has to come to, the limit's temperature moved against it.
 func (v *view) hot(t tilt) region { return v.l.warmSide(*v.l.ToC + t.errK + t.ownK) }
+
+// second is how long a place has to stay there, s.
+func (v *view) second() float64 {
+	if v.l.SecondS == nil {
+		return 0
+	}
+	return *v.l.SecondS
+}
 
 // heatStart is when the clock of a window starts for a place: with the stage, or when it first is at the crossing temperature.
 func (v *view) heatStart(q path, w window, errK float64) (float64, bool) {
@@ -48,13 +77,9 @@ func (v *view) heatWindow(p path, w window, t tilt) outcome {
 	if !ok {
 		return nowhere("heat nowhere")
 	}
-	second := 0.0
-	if l.SecondS != nil {
-		second = *l.SecondS
-	}
 	o := none(NotMet, "heat late")
 	o.start, o.slow = start, true
-	done, reached := q.reach(v.hot(t), start, second)
+	done, reached := q.reach(v.hot(t), start, v.second())
 	if !reached {
 		ran := w.b - start
 		o.value, o.bad, o.margin, o.at = ran/60, neverBad-q.deepest([]interval{w.interval}, v.hot(t)), *l.TimeS-ran, w.b
@@ -84,6 +109,22 @@ func (v *view) heatWindow(p path, w window, t tilt) outcome {
 		o.verdict = Met
 	}
 	return o
+}
+
+// attempts is how many periods in a region were too short until one after start lasted s seconds; never where none did.
+func (p path) attempts(r region, start, s float64) int {
+	const never = 1 << 20
+	done, ok := p.reach(r, start, s)
+	if !ok {
+		return never
+	}
+	n := 0
+	for i := 0; i+1 < len(p.t) && p.t[i+1] < done; i++ {
+		if r.holds(p.c[i]) && !r.holds(p.c[i+1]) {
+			n++
+		}
+	}
+	return n
 }
 
 // reach finds when a path has, after start, been in a region for s seconds in a row.

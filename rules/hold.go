@@ -19,6 +19,9 @@ func judgeHold(v *view) Finding {
 		return v.judgePlaces(v.reached())
 	}
 	q := question{unit: "min", need: *l.TimeS / 60, warm: l.ToC == nil, needs: true, adds: true}
+	q.risks = func(t tilt) []risk {
+		return []risk{turns{breaking: true, another: v.single()}.risk(v.stages, v.heldRegion(t))}
+	}
 	q.traits = func(t tilt) []trait { return []trait{periods(v.stages, v.heldRegion(t))} }
 	q.measure = func(p path, t tilt) outcome {
 		r := v.heldRegion(t)

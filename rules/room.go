@@ -28,7 +28,7 @@ func (v *view) leastRoom(s scope, q question, cs []candidate, least float64, whe
 	}
 	misses := func(k float64) *model.Place {
 		t := tilt{ownK: k, rank: true}
-		for _, x := range v.joints(s, q, cs, t, 1).places {
+		for _, x := range append(v.joints(s, q, cs, t, 1).places, v.risky(s, q, t)...) {
 			p := v.h.PlaceAt(x)
 			if verdict := q.measure(v.path(p), t).verdict; verdict != Met && verdict != NotApplicable {
 				return &p

@@ -11,6 +11,13 @@ func judgeTable(v *view) Finding {
 	l := v.l
 	rows := sortedRows(l.Table)
 	q := question{unit: "1", need: 1, warm: true, needs: true, adds: true}
+	q.risks = func(t tilt) []risk {
+		var all []risk
+		for _, row := range rows {
+			all = append(all, turns{breaking: true, another: v.single()}.risk(v.stages, v.rowRegion(row, t)))
+		}
+		return all
+	}
 	q.traits = func(t tilt) []trait {
 		var all []trait
 		for _, row := range rows {
