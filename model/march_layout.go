@@ -52,14 +52,15 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 	m := newLineMarch(g, laws)
 	m.lower, m.upper = s.faces[0][0], s.faces[0][1]
 	m.fill(s.product.StartC)
-	f.state, f.mesh = m, newLineMesh(g)
+	line := newLineMesh(g)
+	f.state, f.mesh = m, line
 	for _, i := range g.food {
 		if s.front {
 			f.laws = append(f.laws, laws[i])
 		}
 	}
 	nd := &nodes{x: [3][]float64{make([]float64, len(g.x)), {0}, {0}}}
-	for i, x := range g.x {
+	for i, x := range line.places() {
 		nd.x[0][i] = x / g.r
 	}
 	f.body = newBody(body{kinds: kinds, radii: s.radii}, nd)

@@ -36,12 +36,26 @@ func (m *lineMesh) String() string {
 
 // part finds the layer of a place, m; at a joint the layer nearer the centre.
 func (m *lineMesh) partOf(x float64) [2]int {
-	for i, p := range m.parts {
-		if x < m.x[p[1]] || x == m.x[p[1]] && x >= 0 || i == len(m.parts)-1 {
+	last := len(m.parts) - 1
+	for _, p := range m.parts[:last] {
+		if below(x, m.x[p[1]], bondM) {
 			return p
 		}
 	}
-	return m.parts[0]
+	return m.parts[last]
+}
+
+// places are the nodes as places, m: of the two sides of a joint that one that a place on the joint does not belong to lies a little beyond it.
+func (m *lineMesh) places() []float64 {
+	xs := append([]float64(nil), m.x...)
+	for i, p := range m.parts[:len(m.parts)-1] {
+		if joint := m.x[p[1]]; below(joint, joint, bondM) {
+			xs[m.parts[i+1][0]] += beyondM
+		} else {
+			xs[p[1]] -= beyondM
+		}
+	}
+	return xs
 }
 
 // interval finds the node below a place, m, in a layer, and the layer's first and last node.

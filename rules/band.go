@@ -14,7 +14,7 @@ func judgeBand(v *view) Finding {
 	l := v.l
 	q := question{unit: "min", need: *l.TimeS / 60}
 	in := func(t tilt) region { return between(*l.FromC-t.errK-t.ownK, *l.ToC+t.errK) }
-	q.risks = func(t tilt) []risk { return []risk{v.exposedTurns().risk(v.stages, in(t))} }
+	q.risks = func(t tilt) []risk { return []risk{v.risk(v.exposedTurns(), v.stages, in(t))} }
 	q.traits = func(t tilt) []trait { return []trait{periods(v.stages, in(t))} }
 	q.measure = func(p path, t tilt) outcome {
 		r := in(t)

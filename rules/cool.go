@@ -15,7 +15,7 @@ func judgeCool(v *view) Finding {
 	l := v.l
 	ws := v.windows()
 	q := question{unit: "min", need: *l.TimeS / 60, measure: worstOf(ws, "cool nowhere", v.coolWindow)}
-	q.risks = func(t tilt) []risk { return []risk{turns{breaking: true}.risk(v.spans(), v.cold(t))} }
+	q.risks = func(t tilt) []risk { return []risk{v.risk(turns{breaking: true}, v.spans(), v.cold(t))} }
 	q.traits = func(t tilt) []trait {
 		return append(v.clocks(ws, t), periods(v.spans(), v.cold(t)))
 	}

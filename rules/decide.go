@@ -262,7 +262,7 @@ func (v *view) candidates(s scope, q question) []candidate {
 		cs = append(cs, candidate{place: p, surface: surface, path: path, nominal: q.measure(path, tilt{})})
 	}
 	add := func(p model.Place, surface bool) {
-		if !slices.ContainsFunc(cs, func(c candidate) bool { return near(c.place, p) }) {
+		if !slices.ContainsFunc(cs, func(c candidate) bool { return alike(c.place, p) }) {
 			put(p, surface)
 		}
 	}

@@ -11,7 +11,7 @@ func judgeFreeze(v *view) Finding {
 	chilled := func(t tilt) region { return l.coldSide(*l.FromC - t.errK) }
 	frozen := func(t tilt) region { return l.coldSide(*l.ToC - t.errK - t.ownK) }
 	q.risks = func(t tilt) []risk {
-		all := []risk{turns{breaking: true}.risk(v.stages, frozen(t)), turns{breaking: true}.risk(v.stages, chilled(t))}
+		all := []risk{v.risk(turns{breaking: true}, v.stages, frozen(t)), v.risk(turns{breaking: true}, v.stages, chilled(t))}
 		for _, iv := range v.stages {
 			all = append(all, tooShort(chilled(t), func(p path) (float64, path, bool) { return iv.a, p.in(iv), true }, *l.TimeS))
 		}

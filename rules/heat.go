@@ -11,7 +11,7 @@ func judgeHeat(v *view) Finding {
 	ws := v.windows()
 	q := question{unit: "min", need: *v.l.TimeS / 60, warm: true, rises: true, adds: true, measure: worstOf(ws, "heat nowhere", v.heatWindow)}
 	q.risks = func(t tilt) []risk {
-		all := []risk{turns{breaking: true}.risk(v.spans(), v.hot(t))}
+		all := []risk{v.risk(turns{breaking: true}, v.spans(), v.hot(t))}
 		for _, w := range ws {
 			all = append(all, tooShort(v.hot(t), func(p path) (float64, path, bool) {
 				q := p.in(w.interval)

@@ -20,7 +20,7 @@ func judgeHold(v *view) Finding {
 	}
 	q := question{unit: "min", need: *l.TimeS / 60, warm: l.ToC == nil, needs: true, adds: true}
 	q.risks = func(t tilt) []risk {
-		return []risk{turns{breaking: true, another: v.single()}.risk(v.stages, v.heldRegion(t))}
+		return []risk{v.risk(turns{breaking: true, another: v.single()}, v.stages, v.heldRegion(t))}
 	}
 	q.traits = func(t tilt) []trait { return []trait{periods(v.stages, v.heldRegion(t))} }
 	q.measure = func(p path, t tilt) outcome {

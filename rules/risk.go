@@ -2,6 +2,7 @@ package rules
 
 import (
 	"math"
+	"slices"
 
 	"slowpoint/model"
 )
@@ -10,8 +11,11 @@ import (
 // time there and nowhere else. The spots show how near their courses come to such a leap, and from the nearest it is followed by steps along the
 // axes to where it is least (see closer.go).
 
-// risk is how far a course is from a leap of the value to the worse, by how far is looked at; +Inf: there is none; 0 or less: it has leapt.
-type risk func(p path) float64
+// risk fills in how far a course is from each leap of the value to the worse that may be, as a share of how far is looked at; +Inf: no leap is near.
+type risk struct {
+	leaps int // how many may be
+	fill  func(p path, by []float64)
+}
 
 // leapt is by what share of the value at a spot it has leapt.
 const leapt = 0.05
@@ -23,54 +27,62 @@ const riskK = 0.8
 // farther out (two periods may join), and those beyond it that point towards it (another period may begin).
 type turns struct{ breaking, joining, another bool }
 
-// risk is how near the turns of a course come to an end of a region that they do not pass.
-func (w turns) risk(ivs []interval, r region) risk {
-	return func(p path) float64 {
-		least := math.Inf(1)
+// risk is how near the turns of a course come to an end of a region that they do not pass: those of each step by themselves, since they are least at
+// unlike places.
+func (v *view) risk(w turns, ivs []interval, r region) risk {
+	spans := v.h.Spans
+	return risk{len(spans), func(p path, by []float64) {
+		for n := range by {
+			by[n] = math.Inf(1)
+		}
 		for _, iv := range ivs {
-			q := p.in(iv)
+			q, n := p.in(iv), 0
 			for i := 1; i+1 < len(q.c); i++ {
-				a, c, b := q.c[i-1], q.c[i], q.c[i+1]
-				low, high := c <= a && c < b, c >= a && c > b
-				if !low && !high {
-					continue
+				for n+1 < len(spans) && q.t[i] > spans[n].EndS {
+					n++
 				}
-				for _, end := range []float64{r.lo, r.hi} {
-					off := math.Abs(c - end)
-					if !(off < least) {
-						continue
-					}
-					out := end == r.lo && c < r.lo || end == r.hi && c > r.hi
-					outwards := (end == r.lo) == low // it points out of the region there
-					if w.breaking && r.holds(c) && outwards || w.joining && out && outwards || w.another && out && !outwards {
-						least = off
-					}
+				a, c, b := q.c[i-1], q.c[i], q.c[i+1]
+				if low, high := c <= a && c < b, c >= a && c > b; low || high {
+					by[n] = math.Min(by[n], w.off(r, c, low)/riskK)
 				}
 			}
 		}
-		return least / riskK
-	}
+	}}
 }
 
-// tooShort is the risk that the period that lasts s seconds is too short: how much longer the periods are that are long enough.
+// off is how near a turn at c (°C) comes to an end of a region, K.
+func (w turns) off(r region, c float64, low bool) float64 {
+	least := math.Inf(1)
+	for _, end := range []float64{r.lo, r.hi} {
+		out := end == r.lo && c < r.lo || end == r.hi && c > r.hi
+		outwards := (end == r.lo) == low // it points out of the region there
+		if w.breaking && r.holds(c) && outwards || w.joining && out && outwards || w.another && out && !outwards {
+			least = math.Min(least, math.Abs(c-end))
+		}
+	}
+	return least
+}
+
+// tooShort is the risk that the period in which a place is in a region for s seconds is too short: how much longer it is.
 func tooShort(r region, start func(p path) (from float64, part path, ok bool), s float64) risk {
 	const share = 0.25 // of s
-	return func(p path) float64 {
+	return risk{1, func(p path, by []float64) {
+		by[0] = math.Inf(1)
 		from, q, ok := start(p)
 		if !ok || s == 0 {
-			return math.Inf(1)
+			return
 		}
 		done, ok := q.reach(r, from, s)
 		if !ok {
-			return math.Inf(1)
+			return
 		}
-		for i := range q.t {
-			if q.t[i] >= done-s && i+1 < len(q.t) && r.holds(q.c[i]) && !r.holds(q.c[i+1]) {
-				return (q.cross(i, r.edge(q.c[i+1])) - done) / (share * s)
+		for i := 0; i+1 < len(q.t); i++ {
+			if q.t[i+1] >= done && r.holds(q.c[i]) && !r.holds(q.c[i+1]) {
+				by[0] = (q.cross(i, r.edge(q.c[i+1])) - done) / (share * s)
+				return
 			}
 		}
-		return math.Inf(1)
-	}
+	}}
 }
 
 // risky finds the places at which the risks of a question are least, at a tilt, where that is not far from a leap.
@@ -80,25 +92,34 @@ func (v *view) risky(s scope, q question, t tilt) []model.Axes {
 	}
 	var found []model.Axes
 	for _, of := range q.risks(t) {
-		best, least := -1, 1.0
+		nearest, by := make([]int, of.leaps), make([]float64, of.leaps)
+		least := slices.Repeat([]float64{1}, of.leaps)
 		for _, i := range s.spots {
-			if r := of(path{t: v.c.times, c: v.c.rows[i]}); r < least && r > 0 {
-				best, least = i, r
+			of.fill(path{t: v.c.times, c: v.c.rows[i]}, by)
+			for n, r := range by {
+				if r < least[n] {
+					nearest[n], least[n] = i, r
+				}
 			}
 		}
-		if best < 0 {
-			continue
-		}
-		base := q.measure(path{t: v.c.times, c: v.c.rows[best]}, t)
-		x := v.stepwise(func(p path, t tilt) outcome {
-			o := q.measure(p, t)
-			if rank(o.verdict) > rank(base.verdict) || o.bad-base.bad > leapt*math.Abs(base.bad) {
-				o.bad += neverBad * neverBad
-				return o
+		for n, i := range nearest {
+			if least[n] < 1 {
+				found = append(found, v.untilLeapt(q, t, i, func(p path) float64 { of.fill(p, by); return by[n] }))
 			}
-			return outcome{verdict: base.verdict, bad: -of(p)}
-		}, v.c.spots[best].Axes, t)
-		found = append(found, x)
+		}
 	}
 	return found
+}
+
+// untilLeapt goes from a spot along the axes to where a risk is least, or on from where the value has leapt.
+func (v *view) untilLeapt(q question, t tilt, spot int, of func(p path) float64) model.Axes {
+	base := q.measure(path{t: v.c.times, c: v.c.rows[spot]}, t)
+	return v.stepwise(func(p path, t tilt) outcome {
+		o := q.measure(p, t)
+		if rank(o.verdict) > rank(base.verdict) || o.bad-base.bad > leapt*math.Abs(base.bad) {
+			o.bad += neverBad * neverBad
+			return o
+		}
+		return outcome{verdict: base.verdict, bad: -of(p)}
+	}, v.c.spots[spot].Axes, t)
 }

@@ -74,7 +74,7 @@ func (v *view) excursion(level, sign float64) question {
 		}
 		return above(level - t.errK - t.ownK)
 	}
-	q.risks = func(t tilt) []risk { return []risk{v.exposedTurns().risk(v.stages, beyond(t))} }
+	q.risks = func(t tilt) []risk { return []risk{v.risk(v.exposedTurns(), v.stages, beyond(t))} }
 	q.traits = func(t tilt) []trait { return []trait{periods(v.stages, beyond(t))} }
 	q.measure = func(p path, t tilt) outcome {
 		c := v.counting(t)

@@ -14,7 +14,7 @@ func judgeTable(v *view) Finding {
 	q.risks = func(t tilt) []risk {
 		var all []risk
 		for _, row := range rows {
-			all = append(all, turns{breaking: true, another: v.single()}.risk(v.stages, v.rowRegion(row, t)))
+			all = append(all, v.risk(turns{breaking: true, another: v.single()}, v.stages, v.rowRegion(row, t)))
 		}
 		return all
 	}

@@ -511,6 +511,12 @@ func near(a, b model.Place) bool {
 	return math.Abs(a.UpM-b.UpM) < 1e-5 && math.Abs(a.AcrossM-b.AcrossM) < 1e-5 && math.Abs(a.AlongM-b.AlongM) < 1e-5
 }
 
+// alike tells whether two places are the same; the two sides of a joint of layers are not.
+func alike(a, b model.Place) bool {
+	const m = 5e-10
+	return math.Abs(a.UpM-b.UpM) < m && math.Abs(a.AcrossM-b.AcrossM) < m && math.Abs(a.AlongM-b.AlongM) < m
+}
+
 // stepAt is the cell of the step that holds an instant, at a change the one before it.
 func (v *view) stepAt(t float64) (cell.Ref, bool) {
 	for _, sp := range v.h.Spans {
