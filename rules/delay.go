@@ -33,8 +33,9 @@ func judgeDelay(v *view) Finding {
 			worst = o
 		}
 	}
+	tail := v.untilMoves(&worst, []interval{{worst.start, worst.at}})
 	f := v.finding(worst, q)
-	f.Why = v.sentence(&f, worst, "")
+	f.Why = v.sentence(&f, worst, tail)
 	return f
 }
 

@@ -26,7 +26,8 @@ func judgeDuration(v *view) Finding {
 		o.verdict = Met
 	}
 	q := question{unit: "min", need: *l.TimeS / 60}
+	tail := v.untilMoves(&o, v.stages)
 	f := v.finding(o, q)
-	f.Why = v.sentence(&f, o, "")
+	f.Why = v.sentence(&f, o, tail)
 	return f
 }

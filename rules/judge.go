@@ -2,6 +2,7 @@ package rules
 
 import (
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 )
@@ -42,6 +43,7 @@ func Find(limits []Limit, s Subject) []Finding {
 			if lessFavourable(g, f) {
 				f, g = g, f
 			}
+			f.narrowed(&g)
 			if f.Verdict == Met && f.CarryOver == "" && g.CarryOver != "" { // true of one run is a reservation for both
 				f.carriedOver(g.CarryOver)
 			}
@@ -49,6 +51,21 @@ func Find(limits []Limit, s Subject) []Finding {
 		out = append(out, f)
 	}
 	return out
+}
+
+// narrowed takes the margin in temperature of another run in which the limit is met as well, where that is smaller: the one with less room in time
+// is not always the one with less room in temperature.
+func (f *Finding) narrowed(other *Finding) {
+	if f.Verdict != Met || other.Verdict != Met || f.MarginK == nil || other.MarginK == nil || !(*other.MarginK < *f.MarginK-tieK) {
+		return
+	}
+	old := say("note margin place", holes{"place": f.MarginPlace})
+	f.Notes = slices.DeleteFunc(f.Notes, func(n string) bool { return n == old })
+	f.MarginK, f.MarginPlace = other.MarginK, other.MarginPlace
+	if f.MarginPlace == "" && other.PlaceName != f.PlaceName {
+		f.MarginPlace = other.PlaceName
+	}
+	f.Notes = append(f.Notes, say("note margin run", nil))
 }
 
 // Worse tells whether a finding is less favourable than another of the same limit: by verdict, then by room in time, then in temperature.

@@ -20,6 +20,9 @@ func (v *view) leastRoom(s scope, q question, cs []candidate, least float64, whe
 	if v.h.Recorded || len(s.spots) == 0 || v.brief || !(least > roomK) || math.IsInf(least, 1) {
 		return least, where
 	}
+	if q.room == nil {
+		least = v.exactRoom(q, cs, where, least)
+	}
 	if least < closeRoomK && !s.surfaceOnly {
 		least, where = v.closerRoom(q, cs, least, where)
 	}
@@ -28,6 +31,13 @@ func (v *view) leastRoom(s scope, q question, cs []candidate, least float64, whe
 	}
 	misses := func(k float64) *model.Place {
 		t := tilt{ownK: k, rank: true}
+		if v.single() {
+			for i := range cs {
+				if verdict := q.measure(cs[i].path, t).verdict; verdict != Met && verdict != NotApplicable {
+					return &cs[i].place
+				}
+			}
+		}
 		for _, x := range append(v.joints(s, q, cs, t, 1).places, v.risky(s, q, t)...) {
 			p := v.h.PlaceAt(x)
 			if verdict := q.measure(v.path(p), t).verdict; verdict != Met && verdict != NotApplicable {
@@ -38,6 +48,15 @@ func (v *view) leastRoom(s scope, q question, cs []candidate, least float64, whe
 	}
 	lo, hi := 0.0, least-roomK
 	at := misses(hi)
+	if v.single() { // a second period may come and go
+		for k := roomK; k < hi; k *= 1.6 {
+			if p := misses(k); p != nil {
+				hi, at = k, p
+				break
+			}
+			lo = k
+		}
+	}
 	if at == nil {
 		return least, where
 	}
@@ -50,6 +69,30 @@ func (v *view) leastRoom(s scope, q question, cs []candidate, least float64, whe
 		}
 	}
 	return lo, at
+}
+
+// exactRoom is the room of the place that decides by its exact course: a path of straight lines cuts its turns off.
+func (v *view) exactRoom(q question, cs []candidate, where *model.Place, least float64) float64 {
+	p := cs[0].path
+	if where != nil {
+		p = v.path(*where)
+	}
+	met := func(k float64) bool {
+		verdict := q.measure(p, tilt{ownK: k, rank: true}).verdict
+		return verdict == Met || verdict == NotApplicable
+	}
+	lo, hi := 0.0, least-roomK/2
+	if met(hi) {
+		return least
+	}
+	for hi-lo > roomK/2 {
+		if m := (lo + hi) / 2; met(m) {
+			lo = m
+		} else {
+			hi = m
+		}
+	}
+	return lo
 }
 
 // closerRoom looks for a place of less room by steps along the axes.
