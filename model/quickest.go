@@ -4,8 +4,9 @@ import "math"
 
 // Quickness is how fast a place within a food can follow what surrounds it at most.
 type Quickness struct {
-	SettleS float64 // the time constant with which it follows surroundings that step to a new temperature, s
-	ShareS  float64 // the most that it moves in a second, as a share of the range of all temperatures that its surface and its start had, 1/s
+	SettleS float64   // the time constant with which it follows surroundings that step to a new temperature, s
+	ShareS  float64   // the most that it moves in a second, as a share of the range of all temperatures that its surface and its start had, 1/s
+	Follows *Response // how it follows them at the soonest; nil where its heat content bends too much to say, as that of food that may freeze
 }
 
 // With the surface of a body held at a new temperature its centre follows by a curve S(Fo) from 0 to 1, whose last and slowest part decays with the
@@ -35,21 +36,23 @@ func Quickest(p *Product, at *Place, lowC, highC, filmW float64) (q Quickness, o
 	if p.Shape == nil || p.Shape == Stirred || p.Shape == LayeredSlab {
 		return q, false
 	}
-	alpha, holds := 0.0, math.Inf(1) // m²/s, J/(m³·K)
+	alpha, least, holds := 0.0, math.Inf(1), math.Inf(1) // m²/s, m²/s, J/(m³·K)
 	for _, f := range p.Foods() {
-		a, h := f.quickest(lowC, highC)
-		alpha, holds = math.Max(alpha, a), math.Min(holds, h)
+		a, l, h := f.quickest(lowC, highC)
+		alpha, least, holds = math.Max(alpha, a), math.Min(least, l), math.Min(holds, h)
 	}
 	if !(alpha > 0) || math.IsInf(alpha, 0) || !(filmW > 0) {
 		return q, false
 	}
 	rate := 0.0 // 1/s
+	var ds []direction
 	add := func(settles, slope, n, m float64) {
 		if m == 0 || math.IsInf(m, 1) {
 			return
 		}
 		behind := m * holds / (n * filmW) // s
 		rate += 1 / (m*m/(alpha*settles) + behind)
+		ds = append(ds, direction{bends: n, decayS: m * m / alpha, biot: m * filmW / (alpha * holds)})
 		q.ShareS += math.Min(alpha*slope/(m*m), 1/behind)
 	}
 	r := reach(p)
@@ -70,14 +73,20 @@ func Quickest(p *Product, at *Place, lowC, highC, filmW float64) (q Quickness, o
 		}
 	}
 	q.SettleS = 1 / rate
+	if rate > 0 && !math.IsInf(rate, 0) && alpha <= mostBend*least {
+		q.Follows = newResponse(ds, q.SettleS)
+	}
 	return q, rate > 0
 }
 
-// quickest is the highest thermal diffusivity of a food from lowC to highC, m²/s, and the least heat that it holds, J/(m³·K); 0 where it is not known.
-func (f *Material) quickest(lowC, highC float64) (alpha, holds float64) {
-	holds = math.Inf(1)
+// mostBend is how much the diffusivity may differ over the range for a response to be worked out; own choice. Ice has several times that of food that is thawed.
+const mostBend = 1.5
+
+// quickest is the highest thermal diffusivity of a food from lowC to highC, and the least, m²/s, and the least heat that it holds, J/(m³·K); 0 where it is not known.
+func (f *Material) quickest(lowC, highC float64) (alpha, least, holds float64) {
+	least, holds = math.Inf(1), math.Inf(1)
 	if f.Props == nil {
-		return 0, holds
+		return 0, 0, holds
 	}
 	const steps = 40
 	for i := 0; i <= steps; i++ {
@@ -87,10 +96,10 @@ func (f *Material) quickest(lowC, highC float64) (alpha, holds float64) {
 		}
 		q := f.Props(c)
 		if h := q.RhoKgM3 * q.CJkgK; h > 0 {
-			alpha, holds = math.Max(alpha, q.KWmK/h), math.Min(holds, h)
+			alpha, least, holds = math.Max(alpha, q.KWmK/h), math.Min(least, q.KWmK/h), math.Min(holds, h)
 		}
 	}
-	return alpha, holds
+	return alpha, least, holds
 }
 
 // deep is how far a place lies within the food, m: no more than to its nearest surface; 0 on it.

@@ -24,10 +24,10 @@ func leapPlan(t *testing.T, dir string) (whole, bare string) {
 	whole, bare = filepath.Join(dir, "plan"), filepath.Join(dir, "bare")
 	writePlan(t, bare, map[string]string{"Limits": limits})
 	writePlan(t, whole, map[string]string{
-		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nTray,Oven,slab,40,Mash,5\nHot tray,Chiller,slab,40,Mash,85\nThin tray,Chiller,slab,25,Mash,85\nHot slice,Ice bath,slab,4,Mash,85\n",
+		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nTray,Oven,slab,40,Mash,5\nSlow tray,Slow oven,slab,40,Mash,5\nHot tray,Chiller,slab,40,Mash,85\nThin tray,Chiller,slab,25,Mash,85\nHot slice,Ice bath,slab,4,Mash,85\nBlast tray,Blast chiller,slab,40,Mash,85\n",
 		"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Source\nMash,0.5,1050,3600,no,invented\n",
 		"Steps": "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\n" +
-			"Oven,bake,cook,120,film,130,15\nChiller,chill,cool,480,film,1,10\nIce bath,chill,cool,480,film,1,500\n",
+			"Oven,bake,cook,120,film,130,15\nSlow oven,bake,cook,120,film,80,15\nChiller,chill,cool,480,film,1,10\nIce bath,chill,cool,480,film,1,500\nBlast chiller,chill,cool,480,film,1,60\n",
 		"Limits": limits,
 	})
 	return whole, bare
@@ -74,6 +74,16 @@ func firstBelow(c []float64, most float64) int {
 	return len(c)
 }
 
+// firstAbove is the first reading above a temperature.
+func firstAbove(c []float64, least float64) int {
+	for i := range c {
+		if c[i] > least {
+			return i
+		}
+	}
+	return len(c)
+}
+
 // TestLeapsAreNotMet: a record with a probe that left the food is cannot tell where its readings of something else would meet a limit; what a
 // food does is judged as it was. The courses are the exact model's, with a film that makes them miss the limit (10 W/m²K) or meet it (40 W/m²K).
 func TestLeapsAreNotMet(t *testing.T) {
@@ -109,6 +119,14 @@ func TestLeapsAreNotMet(t *testing.T) {
 		}
 		return append(out, c...)
 	}
+	slowly := centreOf(t, 0.04, 5, 80, 15, 300, 3900) // out at 47.8 °C into 80 °C for four readings, a sensor of 5 min
+	slowly = append(slowly[:firstAbove(slowly, 46)], 47.8, 68.1, 75.6, 78.4, 79.4, 56.7, 51.2, 49.9, 50.1, 50.8, 51.5, 52.2)
+	straight := centreOf(t, 0.04, 85, 1, 60, 60, 28800)
+	straight = straight[:firstBelow(straight, 63)] // to 2.5 °C by 4 °C a minute
+	for c := 63.0; c > 2.5; c -= 4 {
+		straight = append(straight, c)
+	}
+	straight = append(straight, rests(nil, 120, 2.5)...)
 	put := rests(good, 4, 21.3)
 	slice := rests(centreOf(t, 0.004, 85, 1, 500, 60, 28800), 20, 85)
 	for _, c := range []struct {
@@ -134,6 +152,8 @@ func TestLeapsAreNotMet(t *testing.T) {
 		{"unplugged, at room temperature", away(slow(60), 31.6, 20.5, 60, 0, 0), 60, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
 		{"put back after 10 min", away(slow(60), 31.6, 3.0, 60, 0, 10), 60, 1, "Hot tray", "cool", "", cannotTell, "up to line"},
 		{"fallen out into the oven", fallen, 60, 1, "Tray", "cook", "", cannotTell, "faster than this food can move there"},
+		{"in the oven's air by a sensor of 5 min, and back", slowly, 300, 1, "Slow tray", "", "", cannotTell, "faster than this food can move there"},
+		{"straight down by 4 °C a minute", straight, 60, 1, "Blast tray", "", "", cannotTell, "faster than this food can move there"},
 		{"chilled well", good, 60, 1, "Hot tray", "cool", "", met, ""},
 		{"chilled well, to the degree", good, 60, 0, "Hot tray", "cool", "", met, ""},
 		{"cooked well", bake, 60, 1, "Tray", "cook", "", met, ""},

@@ -80,7 +80,7 @@ func foodAt(rec *workbook.Record) *record.Food {
 	if q, ok := model.Quickest(&p.Product, at, lo, hi, filmOff*film); ok {
 		f.SettleS = q.SettleS
 		if whole {
-			f.ShareS, f.LowC, f.HighC = q.ShareS, lo, hi
+			f.ShareS, f.LowC, f.HighC, f.Follows = q.ShareS, lo, hi, q.Follows
 		}
 	}
 	return f

@@ -4,14 +4,16 @@ import (
 	"math"
 	"sort"
 
+	"slowpoint/model"
 	"slowpoint/model/cell"
 )
 
 // Food is a place within a food whose temperature a channel shows.
 type Food struct {
-	SettleS     float64 // how soon it settles once its surroundings change, at the soonest (model.Quickness), s; 0: not known
-	ShareS      float64 // the most that it moves in a second, as a share of the range of its surroundings, 1/s; 0: not known
-	LowC, HighC float64 // that range, °C; NaN: not known
+	SettleS     float64         // how soon it settles once its surroundings change, at the soonest (model.Quickness), s; 0: not known
+	ShareS      float64         // the most that it moves in a second, as a share of the range of its surroundings, 1/s; 0: not known
+	LowC, HighC float64         // that range, °C; NaN: not known
+	Follows     *model.Response // how it follows its surroundings at the soonest; nil: not known
 }
 
 // Leap is a move that is faster than a food can move, after which the readings may be of something else.
@@ -21,7 +23,7 @@ type Leap struct {
 	Problem     cell.Error
 }
 
-// A leap is told from a move of the food in one of four ways. All figures are our own choice; what a food can do is computed (model.Quickest) and
+// A leap is told from a move of the food in one of five ways. All figures are our own choice; what a food can do is computed (model.Quickest) and
 // held against histories of the exact model by tests.
 //
 // It begins and ends too sharply. A food smooths what its surroundings do: in up to a quarter of the time in which it settles it does not move sharply
@@ -31,6 +33,10 @@ type Leap struct {
 // doubted, which the thickness in the plan mends.
 //
 // It is faster than a known food can move: twice over, for a plan whose thickness or conductivity is off, or by any amount if it is sharp as well.
+//
+// It is beyond what a known food can do, however its surroundings were (model.Response): it turns away further from the straight line that it was on,
+// or comes nearer to the coldest or the hottest of the plan, than food that is twice as quick could. So a slow sensor is told from the food too,
+// which it leaves too suddenly, or for the air too soon.
 //
 // It begins too sharply and is faster than the food can move, however it ends: a probe in a sleeve follows the air for minutes. Of a food that is not
 // known that is what the core of a slab of 20 mm does with its faces held at a temperature unknownK away.
@@ -46,17 +52,24 @@ const (
 	unknownOneS = 300.0 // from a reading to the next
 	twiceOver   = 2.0
 	lastLeap    = 10.0 // K
+	slackK      = 5.0  // by which surroundings may be colder or hotter than in the plan, and than all readings, K
+	turnK       = 2.0  // of noise, K
+	onsetK      = 1.0  // that a first reading has turned, K
+	onsetPart   = 0.03 // of the leap
 
 	unknownShareS = 1.851 * 1.5e-7 / (0.010 * 0.010) // model.Quickest of that slab, of a food that conducts well, 1/s
 	unknownK      = 120.0
 )
 
 // Readings have come back when, within backS, they go back by at least half of how far they were away, as fast as a leap, to within a quarter of it of
-// the last reading before it, and backLeast of them in a row stay there. Otherwise they are doubted to the end. Own choice.
+// the last reading before it, and backLeast of them in a row stay there. Otherwise they are doubted to the end. A slow sensor is still on its way then,
+// and is doubted on (settled). Own choice.
 const (
 	backS     = 3600.0
 	backLeast = 3
 	backK     = 2.0 // near enough in any case
+	farPart   = 0.9 // of the farthest
+	settledK  = 1.5 // that it moves in the time that it took to come back
 )
 
 // A probe was put in, and not pulled out, where the file begins with readings that all lie within putInK of each other at a temperature of
@@ -70,17 +83,19 @@ const (
 
 // leaper looks for leaps among the readings that are not doubtful already.
 type leaper struct {
-	at    []int // of each reading: its place in the log
-	t, c  []float64
-	food  Food
-	resK  float64
-	spans []float64 // the times in which a leap is looked for, s, rising
-	oneS  float64   // the longest from a reading to the next
-	mostC float64   // K/s, 0: not known
+	at     []int // of each reading: its place in the log
+	t, c   []float64
+	food   Food
+	resK   float64
+	spans  []float64 // the times in which a leap is looked for, s, rising
+	oneS   float64   // the longest from a reading to the next
+	mostC  float64   // K/s, 0: not known
+	since  int       // the first reading after the last leap: what was read before it was of something else
+	lo, hi float64   // what its surroundings may have been at, °C; NaN: not known
 }
 
 func newLeaper(log *Log, f Food) *leaper {
-	s := &leaper{food: f, resK: log.ResolutionK}
+	s := &leaper{food: f, resK: log.ResolutionK, lo: math.NaN(), hi: math.NaN()}
 	for i, d := 0, 0; i < len(log.C); i++ {
 		if d < len(log.Doubtful) && log.Doubtful[d] == i {
 			d++
@@ -108,6 +123,7 @@ func newLeaper(log *Log, f Food) *leaper {
 			lo, hi = math.Min(lo, c), math.Max(hi, c)
 		}
 		s.mostC = f.ShareS * (hi - lo)
+		s.lo, s.hi = lo-slackK, hi+slackK
 	} else if f.SettleS == 0 {
 		s.mostC = unknownShareS * unknownK
 	}
@@ -145,7 +161,7 @@ func (s *leaper) all() []Leap {
 			}
 		}
 		out = append(out, l)
-		i = back
+		i, s.since = back, back
 	}
 	return out
 }
@@ -167,7 +183,7 @@ func (s *leaper) from(i int, ends []int) (base int, ok bool) {
 			continue
 		}
 		before = j
-		if s.isLeap(i, j) {
+		if s.isLeap(i, j) || s.beyond(i, j) {
 			return s.onset(i, j), true
 		}
 	}
@@ -221,19 +237,53 @@ func (s *leaper) isLeap(i, j int) bool {
 	return !open && long <= s.food.SettleS/ofSettling
 }
 
-// onset is the last reading before a leap between i and j.
-func (s *leaper) onset(i, j int) int {
-	least := math.Max(math.Abs(s.c[j]-s.c[i])/sharply, s.resK)
-	m := i + 1
-	for m < j && math.Abs(s.c[m]-s.c[i]) < least {
-		m++
+// beyond tells whether the readings up to j are beyond what the place of a known food can do after the reading i, however its surroundings were.
+func (s *leaper) beyond(i, j int) bool {
+	move, long := s.c[j]-s.c[i], s.t[j]-s.t[i]
+	if s.food.Follows == nil || math.IsNaN(s.lo) || math.Abs(move) < leastJump {
+		return false
 	}
-	for ; m-1 > i; m-- { // a slow sensor moves the most at first
-		if last, now := s.c[m-1]-s.c[m-2], s.c[m]-s.c[m-1]; last*now <= 0 || math.Abs(last) < math.Abs(now)/2 || math.Abs(last) <= s.resK {
-			break
+	end := s.lo
+	if move > 0 {
+		end = s.hi
+	}
+	if math.Abs(s.c[j]-end)+2*s.resK < (math.Abs(s.c[i]-end)-2*s.resK)*math.Exp(-twiceOver*long/s.food.SettleS) {
+		return true // sooner there than the slowest part of a start is gone
+	}
+	h := i
+	for h > s.since && s.t[i]-s.t[h] < long-sameS {
+		h--
+	}
+	before, share := s.t[i]-s.t[h], 0.0
+	if h < i {
+		share = long / before
+	}
+	off := move - share*(s.c[i]-s.c[h]) // from the straight line
+	if off*move <= 0 {
+		return false
+	}
+	noise := turnK + (1+share)*s.resK
+	if math.Abs(off) > leastJump && math.Abs(off) > noise+s.food.Follows.Turn(twiceOver*before, twiceOver*long)*(s.hi-s.lo) {
+		return true
+	}
+	return math.Abs(move) > noise+s.food.Follows.Turn(0, twiceOver*long)*(s.hi-s.lo)
+}
+
+// onset is the last reading before a leap between i and j: the first after which it turns that way, by more than noise and than a small part of the leap.
+// A probe that is pulled out shortly before a reading has moved by little at that.
+func (s *leaper) onset(i, j int) int {
+	away := s.c[j] - s.c[i]
+	least := math.Max(onsetK, math.Max(3*s.resK, math.Abs(away)*onsetPart))
+	for m := max(0, i-1); m < j; m++ {
+		turn := s.c[m+1] - s.c[m]
+		if m > 0 {
+			turn -= (s.c[m] - s.c[m-1]) * (s.t[m+1] - s.t[m]) / (s.t[m] - s.t[m-1])
+		}
+		if math.Copysign(turn, turn*away) >= least {
+			return m
 		}
 	}
-	return m - 1
+	return i
 }
 
 // back finds the reading with which a leap after base has come back; the number of readings if it has not. far is the reading farthest away on its side.
@@ -266,10 +316,30 @@ func (s *leaper) back(base int) (back int, far float64) {
 			stays = stays && math.Abs(s.c[x]-s.c[base]) <= near
 		}
 		if stays {
-			return k, s.c[base] + away
+			return s.settled(base, k), s.c[base] + away
 		}
 	}
 	return n, s.c[base] + away
+}
+
+// settled is the reading, from k on, at which a sensor that has come back to k is no longer on its way: a slow one that has come to within a quarter takes
+// as long again for each further quarter. It is waited for twice that, and no longer than it moves.
+func (s *leaper) settled(base, k int) int {
+	far, side := k-1, s.c[k-1]-s.c[base]
+	for x := k - 1; x > base; x-- { // the last that was as far away as any
+		if d := s.c[x] - s.c[base]; math.Abs(d) > math.Abs(side)/farPart {
+			far, side = x, d
+		}
+	}
+	took := s.t[k] - s.t[far]
+	last := k
+	for ; last+1 < len(s.c) && s.t[last+1] <= s.t[k]+2*took+sameS; last++ {
+		move := math.Copysign(s.c[last+1]-s.c[last], -side*(s.c[last+1]-s.c[last]))
+		if move*took/(s.t[last+1]-s.t[last]) <= settledK+2*s.resK {
+			break
+		}
+	}
+	return last
 }
 
 // putIn tells whether the probe was put into the food just after base; far is where it went.
