@@ -144,21 +144,29 @@ func (r *Response) in(came []float64, t float64) float64 {
 	}
 }
 
+// Times are rounded to 2 %, and what follows grows with no more than the third power of them.
+const rounded = 1.05
+
+func hundredths(s float64) int {
+	if s <= 0 {
+		return math.MinInt
+	}
+	return int(math.Round(math.Log(s) * 50))
+}
+
 // Turn is the most by which the place can be off, afterS after a reading, the straight line through that reading and one beforeS before it; as a share of
 // the range of its surroundings. beforeS of 0: off the reading itself.
 func (r *Response) Turn(beforeS, afterS float64) float64 {
-	near := func(s float64) int { // to 2 %
-		if s <= 0 {
-			return math.MinInt
-		}
-		return int(math.Round(math.Log(s) * 50))
-	}
-	key := [2]int{near(beforeS), near(afterS)}
+	key := [2]int{hundredths(beforeS), hundredths(afterS)}
 	r.mu.Lock()
 	defer r.mu.Unlock()
 	if most, ok := r.known[key]; ok {
 		return most
 	}
+	if beforeS > 0 {
+		beforeS = math.Exp(float64(key[0]) / 50)
+	}
+	afterS = math.Exp(float64(key[1]) / 50)
 	slope := 0.0
 	if beforeS > 0 {
 		slope = afterS / beforeS
@@ -173,7 +181,7 @@ func (r *Response) Turn(beforeS, afterS float64) float64 {
 			was = now
 		}
 	}
-	most := 1.02 * sum / 2 // times are rounded to 2 %
+	most := rounded * sum / 2
 	r.known[key] = most
 	return most
 }

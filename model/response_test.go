@@ -26,7 +26,7 @@ func TestResponseOfHeld(t *testing.T) {
 		if got := r.in(r.came[0], c.fo*decay); math.Abs(got-want) > c.behind {
 			t.Errorf("%s: %.5f, want %.5f", c.name, got, want)
 		}
-		if got := r.Turn(0, 50*decay); math.Abs(got-1.02) > 0.01 {
+		if got := r.Turn(0, 50*decay); math.Abs(got-rounded) > 0.01 {
 			t.Errorf("%s: from one extreme to the other it moves by %.3f of the range", c.name, got)
 		}
 	}

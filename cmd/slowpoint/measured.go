@@ -57,7 +57,6 @@ func settingOf(rec *workbook.Record, path string, today time.Time) record.Settin
 	if rec.AccuracyK != nil {
 		s.AccuracyK = *rec.AccuracyK
 	}
-	s.Food = foodAt(rec)
 	return s
 }
 
@@ -128,6 +127,15 @@ type ran struct {
 	first  int       // the first step that it covers
 	startS []float64 // of each covered step, s from the first reading; and behind the last its end
 	clockS float64   // how finely these are told
+}
+
+// stretches are the covered steps on the clock of the log.
+func (w *ran) stretches(steps []model.Step) (out []record.Stretch) {
+	for i := 0; i+1 < len(w.startS); i++ {
+		st := steps[w.first+i].Stage
+		out = append(out, record.Stretch{StartS: w.startS[i], EndS: w.startS[i+1], Heats: st != nil && st.Heats})
+	}
+	return out
 }
 
 // fault is a mistake in a cell of a record's row.
@@ -428,6 +436,9 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 	}
 	nextDay(rec, log, m)
 	inexact(rec, m)
+	if f := foodAt(rec); f != nil {
+		log = log.Within(*f, way.stretches(p.Steps))
+	}
 	re, lines := recording(rec, log, p, way, m)
 	if len(re.TimesS) == 0 {
 		m.Problems.Add(*fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it"))

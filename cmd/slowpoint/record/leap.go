@@ -16,11 +16,18 @@ type Food struct {
 	Follows     *model.Response // how it follows its surroundings at the soonest; nil: not known
 }
 
+// Stretch is a step of the chain on the clock of a log.
+type Stretch struct {
+	StartS, EndS float64 // s
+	Heats        bool    // its surroundings are hotter than the food
+}
+
 // Leap is a move that is faster than a food can move, after which the readings may be of something else.
 type Leap struct {
 	Before      int // the last reading before it
 	First, Last int // the readings that are doubtful; Last < First: none, the probe was put in there
 	Problem     cell.Error
+	strayC      float64 // the farthest of readings that went away and came back, °C; 0: it is told by how fast it was
 }
 
 // A leap is told from a move of the food in one of five ways. All figures are our own choice; what a food can do is computed (model.Quickest) and
@@ -55,7 +62,10 @@ const (
 	slackK      = 5.0  // by which surroundings may be colder or hotter than in the plan, and than all readings, K
 	turnK       = 2.0  // of noise, K
 	onsetK      = 1.0  // that a first reading has turned, K
+	onsetBack   = 3    // readings before the move in which it is looked for
 	onsetPart   = 0.03 // of the leap
+	strayS      = 3600.0
+	lateS       = 300.0 // by which a step may have begun earlier than is said
 
 	unknownShareS = 1.851 * 1.5e-7 / (0.010 * 0.010) // model.Quickest of that slab, of a food that conducts well, 1/s
 	unknownK      = 120.0
@@ -91,6 +101,7 @@ type leaper struct {
 	oneS   float64   // the longest from a reading to the next
 	mostC  float64   // K/s, 0: not known
 	since  int       // the first reading after the last leap: what was read before it was of something else
+	steps  []Stretch // of the chain; nil: not known
 	lo, hi float64   // what its surroundings may have been at, °C; NaN: not known
 }
 
@@ -130,22 +141,25 @@ func newLeaper(log *Log, f Food) *leaper {
 	return s
 }
 
-// leaps finds where a channel within a food leaps. It adds them to the log with what there is to say; nothing is said yet, for readings outside the
-// steps do not count.
-func (r *reader) leaps(t *taker) {
-	if r.set.Food == nil || len(r.log.C) < 3 {
-		return
+// Within gives the log of a place within a food: the same readings, with where they leap. steps are those of the chain, rising; none: they are not known.
+func (l *Log) Within(f Food, steps []Stretch) *Log {
+	out := *l
+	if len(l.C) < 3 {
+		return &out
 	}
-	r.log.Leaps = newLeaper(r.log, *r.set.Food).all()
-	for i := range r.log.Leaps {
-		l := &r.log.Leaps[i]
-		l.Problem = r.leapt(t, l)
+	s := newLeaper(l, f)
+	s.steps = steps
+	out.Leaps = s.all()
+	for i := range out.Leaps {
+		out.Leaps[i].Problem = out.leapt(&out.Leaps[i], f.SettleS > 0)
 	}
+	return &out
 }
 
 // all are the leaps, without what there is to say.
 func (s *leaper) all() []Leap {
 	var out []Leap
+	s.since = 0
 	ends := make([]int, len(s.spans)) // by span: the last reading within it
 	for i := 0; i+1 < len(s.c); {
 		base, ok := s.from(i, ends)
@@ -163,7 +177,104 @@ func (s *leaper) all() []Leap {
 		out = append(out, l)
 		i, s.since = back, back
 	}
+	return s.withStrays(out)
+}
+
+// withStrays adds to the leaps where readings go astray and come back, between them.
+func (s *leaper) withStrays(leaps []Leap) []Leap {
+	var out []Leap
+	i, n := 0, 0
+	for k := range s.steps {
+		sign := 1.0 // of food that is chilled: it may rise before it falls, and does not rise again
+		if s.steps[k].Heats {
+			sign = -1
+		}
+		until := math.Inf(1) // when the next step begins
+		if k+1 < len(s.steps) {
+			until = s.steps[k].EndS
+		}
+		for i < len(s.t) && s.t[i] < s.steps[k].StartS-sameS {
+			i++
+		}
+		for i < len(s.t) && s.step(i) == k {
+			j := i // up to the next leap
+			for j < len(s.t) && s.step(j) == k && (n == len(leaps) || s.at[j] < leaps[n].First) {
+				j++
+			}
+			out = append(out, s.strays(i, j, sign, until)...)
+			for i = j; n < len(leaps) && i < len(s.t) && s.at[i] >= leaps[n].First; n++ {
+				out = append(out, leaps[n])
+				for i < len(s.t) && s.at[i] <= leaps[n].Last {
+					i++
+				}
+			}
+		}
+	}
+	out = append(out, leaps[n:]...)
+	sort.SliceStable(out, func(a, b int) bool { return out[a].First < out[b].First })
 	return out
+}
+
+// strays finds where the readings from i up to before end, of one step, fall and rise again (sign 1) or rise and fall again (−1) as no food does in
+// surroundings that stay as they are: heat from further out may first run on, and then the middle follows them. What turns once more within strayS is of something else until it
+// has come back, which a sensor has where it turns anew: there it shows what it is in.
+func (s *leaper) strays(i, end int, sign, untilS float64) []Leap {
+	var out []Leap
+	least := math.Max(leastJump, 3*s.resK)
+	for i < end {
+		high, x := i, -1 // the highest so far, and the lowest since, where it is far enough below
+		k := i
+		for ; k < end; k++ {
+			y := sign * s.c[k]
+			switch {
+			case y > sign*s.c[high] && x < 0:
+				high = k
+			case x < 0 && y <= sign*s.c[high]-least, x >= 0 && y < sign*s.c[x]:
+				x = k
+			}
+			if x >= 0 && y >= sign*s.c[x]+least {
+				break
+			}
+		}
+		if k >= end {
+			return out
+		}
+		back := k // where it turns anew
+		for r := k; r < len(s.c) && sign*s.c[r] > sign*s.c[back]-math.Max(onsetK, 3*s.resK); r++ {
+			if sign*s.c[r] >= sign*s.c[back] {
+				back = r
+			}
+		}
+		m := x - 1 // the last that was as high
+		for m > i && sign*s.c[m] < sign*s.c[back] {
+			m--
+		}
+		if s.t[x]-s.t[m] > strayS || back >= end-1 && (k == end-1 && end < len(s.t) || untilS-s.t[k] <= lateS+sameS) {
+			i = max(back, i+1)
+			continue
+		}
+		m = s.leaves(i, m, x, sign)
+		last := back - 1
+		if back == len(s.c)-1 { // it is on its way yet
+			last = back
+		}
+		out = append(out, Leap{Before: s.at[m], First: s.at[m+1], Last: s.at[last], strayC: s.c[x]})
+		i = back
+	}
+	return out
+}
+
+// leaves is the last reading before those that went astray to x, from i on: m, or earlier where it turns that way earlier.
+func (s *leaper) leaves(i, m, x int, sign float64) int {
+	least := math.Max(onsetK, math.Max(3*s.resK, onsetPart*math.Abs(s.c[x]-s.c[m])))
+	first := m
+	for k := m; k > i && s.t[m]-s.t[k] <= strayS/4; k-- {
+		turn := s.c[k+1] - s.c[k] - (s.c[k]-s.c[k-1])*(s.t[k+1]-s.t[k])/(s.t[k]-s.t[k-1])
+		if -sign*turn >= least {
+			first = k
+		}
+	}
+	return first
 }
 
 // from looks for a leap after the reading i, and gives the last reading before it.
@@ -184,10 +295,22 @@ func (s *leaper) from(i int, ends []int) (base int, ok bool) {
 		}
 		before = j
 		if s.isLeap(i, j) || s.beyond(i, j) {
-			return s.onset(i, j), true
+			return s.onset(s.soonest(i, j)), true
 		}
 	}
 	return 0, false
+}
+
+// soonest is the move within the readings from i to j, which hold a leap, that ends first and is one too.
+func (s *leaper) soonest(i, j int) (from, to int) {
+	for to = i + 1; to < j; to++ {
+		for from = to - 1; from >= i; from-- {
+			if s.isLeap(from, to) || s.beyond(from, to) {
+				return from, to
+			}
+		}
+	}
+	return i, j
 }
 
 // sameS is below what any logger's clock tells, s.
@@ -255,6 +378,9 @@ func (s *leaper) beyond(i, j int) bool {
 		h--
 	}
 	before, share := s.t[i]-s.t[h], 0.0
+	if before < long/2 { // too short to tell a straight line from noise
+		h, before = i, 0
+	}
 	if h < i {
 		share = long / before
 	}
@@ -274,7 +400,7 @@ func (s *leaper) beyond(i, j int) bool {
 func (s *leaper) onset(i, j int) int {
 	away := s.c[j] - s.c[i]
 	least := math.Max(onsetK, math.Max(3*s.resK, math.Abs(away)*onsetPart))
-	for m := max(0, i-1); m < j; m++ {
+	for m := max(s.since, i-onsetBack); m < j; m++ {
 		turn := s.c[m+1] - s.c[m]
 		if m > 0 {
 			turn -= (s.c[m] - s.c[m-1]) * (s.t[m+1] - s.t[m]) / (s.t[m] - s.t[m-1])
@@ -311,7 +437,7 @@ func (s *leaper) back(base int) (back int, far float64) {
 		for x := m; x < k; x++ {
 			returned = returned || math.Abs(s.c[x]-s.c[k]) >= math.Abs(away)/2 && (s.c[x]-s.c[k])*away > 0
 		}
-		stays := returned
+		stays := returned && s.maySee(base, k, away)
 		for x := k + 1; x < k+backLeast; x++ {
 			stays = stays && math.Abs(s.c[x]-s.c[base]) <= near
 		}
@@ -320,6 +446,23 @@ func (s *leaper) back(base int) (back int, far float64) {
 		}
 	}
 	return n, s.c[base] + away
+}
+
+// maySee tells whether a reading k may be of the food again after a leap by away (K, with its sign) behind base. In another step a probe that lies in the air
+// passes what the food was at on its way to the new surroundings; only what goes the other way has been put back.
+func (s *leaper) maySee(base, k int, away float64) bool {
+	a, b := s.step(base), s.step(k)
+	return a == b || b < 0 || s.steps[b].Heats == (away > 0)
+}
+
+// step is the step that a reading lies in; −1 if it lies in none.
+func (s *leaper) step(i int) int {
+	for k := range s.steps {
+		if s.t[i] >= s.steps[k].StartS-sameS && (s.t[i] < s.steps[k].EndS || k == len(s.steps)-1 && s.t[i] <= s.steps[k].EndS+sameS) {
+			return k
+		}
+	}
+	return -1
 }
 
 // settled is the reading, from k on, at which a sensor that has come back to k is no longer on its way: a slow one that has come to within a quarter takes
@@ -344,7 +487,7 @@ func (s *leaper) settled(base, k int) int {
 
 // putIn tells whether the probe was put into the food just after base; far is where it went.
 func (s *leaper) putIn(base int, far float64) bool {
-	if s.t[base]-s.t[0] > putInS || far >= boils {
+	if k := s.step(base); s.t[base]-s.t[0] > putInS || far >= boils || k >= 0 && s.steps[k].Heats && far > s.c[base] { // food comes cold to a step that heats it
 		return false
 	}
 	lo, hi := s.c[0], s.c[0]
@@ -354,24 +497,26 @@ func (s *leaper) putIn(base int, far float64) bool {
 	return hi-lo <= math.Max(putInK, 2*s.resK) && lo >= roomLow && hi <= roomHigh
 }
 
-// leapt words a leap.
-func (r *reader) leapt(t *taker, l *Leap) cell.Error {
-	log := r.log
-	at, typed := r.src.place(log.Lines[l.First], t.lay.temp), shownC(log.C[l.First])
-	from, long := shownC(log.C[l.Before]), spanOf(log.TimesS[l.First]-log.TimesS[l.Before])
-	if l.Last < l.First {
+// leapt words a leap of a food that is known or not.
+func (l *Log) leapt(p *Leap, known bool) cell.Error {
+	at, typed := l.src.place(l.Lines[p.First], l.temp), shownC(l.C[p.First])
+	from, long := shownC(l.C[p.Before]), spanOf(l.TimesS[p.First]-l.TimesS[p.Before])
+	if p.Last < p.First {
 		return putInto.problem(at, cell.Warning, "", typed, from, long)
-	}
-	food := "the core of a food can move unless it is thin"
-	if r.set.Food.SettleS > 0 {
-		food = "this food can move there"
 	}
 	which := "it is"
 	switch {
-	case l.Last == len(log.C)-1 && l.Last > l.First:
+	case p.Last == len(l.C)-1 && p.Last > p.First:
 		which = "it and what follows to the end are"
-	case l.Last > l.First:
-		which = "it and what follows up to " + r.row(log.Lines[l.Last]) + " are"
+	case p.Last > p.First:
+		which = "it and what follows up to " + rowOf(l.src, l.Lines[p.Last]) + " are"
+	}
+	if p.strayC != 0 {
+		return strayed.problem(at, cell.Warning, "", typed, from, long, shownC(p.strayC), spanOf(l.TimesS[min(p.Last+1, len(l.C)-1)]-l.TimesS[p.Before]), which)
+	}
+	food := "the core of a food can move unless it is thin"
+	if known {
+		food = "this food can move there"
 	}
 	return leapt.problem(at, cell.Warning, "", typed, from, long, food, which)
 }
