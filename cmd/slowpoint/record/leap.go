@@ -36,7 +36,7 @@ type Leap struct {
 // It begins and ends too sharply. A food smooths what its surroundings do: in up to a quarter of the time in which it settles it does not move sharply
 // times as fast as in the three times as long before, and after (in 3000 drawn pieces, films and chains 6.6 times at most). A probe that was
 // pulled out or unplugged settles within a minute or two. Of a food that is not known little is taken for granted: that it is no slab under 20 mm, nor
-// a cylinder under 30 mm; and, for readings that lie further apart than unknownS, up to 5 min, no slab under 36 mm. A thinner piece may then be
+// a cylinder under 30 mm; and, for readings that lie further apart than unknownS, no slab under 36 mm (5 min apart) to 50 mm (10 min). A thinner piece may then be
 // doubted, which the thickness in the plan mends.
 //
 // It is faster than a known food can move: twice over, for a plan whose thickness or conductivity is off, or by any amount if it is sharp as well.
@@ -56,7 +56,7 @@ const (
 	ofSettling  = 4.0   // the part of the time of settling
 	leapS       = 900.0 // of a food that is known; sensors follow within that
 	unknownS    = 90.0  // of a food that is not
-	unknownOneS = 300.0 // from a reading to the next
+	unknownOneS = 600.0 // from a reading to the next
 	twiceOver   = 2.0
 	lastLeap    = 10.0 // K
 	slackK      = 5.0  // by which surroundings may be colder or hotter than in the plan, and than all readings, K
@@ -87,6 +87,7 @@ const (
 const (
 	putInS            = 600.0
 	putInK            = 2.0
+	putOnS            = 300.0      // until the sensor shows the food
 	roomLow, roomHigh = 10.0, 35.0 // °C
 	boils             = 100.0
 )
@@ -171,7 +172,7 @@ func (s *leaper) all() []Leap {
 		l := Leap{Before: s.at[base], First: s.at[base+1], Last: s.at[back-1]}
 		if s.putIn(base, far) {
 			l.Last = l.First - 1
-			for back = base + 1; back < len(s.c)-1 && s.t[back] <= s.t[base]+unknownOneS; back++ { // until the sensor shows the food
+			for back = base + 1; back < len(s.c)-1 && s.t[back] <= s.t[base]+putOnS; back++ {
 			}
 		}
 		out = append(out, l)
