@@ -2,6 +2,7 @@ package main
 
 import (
 	"bytes"
+	"encoding/json"
 	"fmt"
 	"math"
 	"os"
@@ -220,5 +221,61 @@ func TestFoodAt(t *testing.T) {
 		if (f != nil) != c.within || f != nil && ((f.SettleS > 0) != c.settles || (f.ShareS > 0) != c.ranges || (f.HighC == 60) != c.ranges) {
 			t.Errorf("%s: %+v", c.name, f)
 		}
+	}
+}
+
+// TestDoubtfulLeftOut: readings of something else are neither held against the prediction nor fitted: both say of a probe that fell out what they say of one that did not,
+// but for the readings that are left out, and tell how many. The courses are the exact model's, with the film of the plan.
+func TestDoubtfulLeftOut(t *testing.T) {
+	dir := t.TempDir()
+	whole, _ := leapPlan(t, dir)
+	plan := map[string]string{
+		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nHot tray,Chiller,slab,40,Mash,85\n",
+		"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\nChiller,chill,cool,480,film,1,10\n",
+		"Limits":   "Limit,Rule,Stage,Applies to,From (°C),To (°C),Time (min),Clock starts,Code,Clause,Edition\nFirst,cool,cool,all,60,21,120,crossing,invented,2,1\n",
+		"Records":  "Record,Product,File,Time column,Temperature column,What it measured,Starts at,Accuracy (°C difference)\nR,Hot tray,core.csv,Elapsed,Core,slowest point,chill,0.2\n",
+	}
+	good := centreOf(t, 0.04, 85, 1, 10, 60, 28800)
+	out := slices.Clone(good)
+	for i := 100; i < 130; i++ {
+		out[i] = 3 + 0.1*math.Sin(float64(i))
+	}
+	for _, c := range []struct {
+		name    string
+		c       []float64
+		leftOut int
+	}{{"stayed in", good, 0}, {"fell out", out, 30}} {
+		t.Run(strings.ReplaceAll(c.name, " ", "-"), func(t *testing.T) {
+			writePlan(t, whole, plan)
+			leapFile(t, filepath.Join(whole, "core.csv"), 60, 1, c.c)
+			var said, errs bytes.Buffer
+			to := filepath.Join(dir, "fit")
+			if code := run([]string{"check", whole, "--fit", "film", "--no-pdf", "--date", "2026-01-31", "--out", to}, nil, &said, &errs); code > 1 {
+				t.Fatalf("exit %d: %s", code, errs.String())
+			}
+			data, err := os.ReadFile(filepath.Join(to, "results.json"))
+			if err != nil {
+				t.Fatal(err)
+			}
+			var got struct {
+				Products []struct {
+					Records []struct {
+						Against struct {
+							Readings int
+							LeftOut  int     `json:"doubtful_left_out"`
+							RMS      float64 `json:"rms_K"`
+							Fitted   []struct{ Value float64 }
+						} `json:"against_prediction"`
+					}
+				}
+			}
+			if err := json.Unmarshal(data, &got); err != nil || len(got.Products) != 1 || len(got.Products[0].Records) != 1 {
+				t.Fatal(err, string(data))
+			}
+			a := got.Products[0].Records[0].Against
+			if a.LeftOut != c.leftOut || a.Readings != len(c.c)-c.leftOut || a.RMS > 0.05 || len(a.Fitted) != 1 || math.Abs(a.Fitted[0].Value-10) > 0.1 {
+				t.Errorf("%+v, want %d left out and a film of 10\n%s", a, c.leftOut, errs.String())
+			}
+		})
 	}
 }

@@ -652,11 +652,19 @@ func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.
 		}
 	}
 	stride := max(1, (len(re.TimesS)+mostCompared-1)/mostCompared)
-	var on, c []float64 // the times on the clock of the prediction, and what was read
+	var on, c []float64 // the times on the clock of the prediction, and what was read; NaN: doubtful
 	for i := 0; i < len(re.TimesS); i += stride {
-		a.TimesS, on, c = append(a.TimesS, re.TimesS[i]), append(on, before+re.TimesS[i]), append(c, re.C[i])
+		read := re.C[i]
+		if _, doubted := slices.BinarySearch(re.Doubted, i); doubted {
+			read = math.NaN()
+			a.LeftOut++
+		}
+		a.TimesS, on, c = append(a.TimesS, re.TimesS[i]), append(on, before+re.TimesS[i]), append(c, read)
 	}
-	a.Readings = len(on)
+	if a.Readings = len(on) - a.LeftOut; a.Readings == 0 {
+		m.Problems.Add(cell.Error{At: rec.At, Level: cell.Note, Msg: "The record was not compared with the prediction: all of its readings are doubtful"})
+		return
+	}
 	a.C = make([]float64, len(on))
 	h.Course(a.Place, on, a.C)
 	var slow []float64
@@ -690,12 +698,15 @@ func asItWas(plan []model.Step, lengths []float64, way *ran) (steps []model.Step
 func differ(a *report.Against, spans []model.Span, c, slow []float64) {
 	k := 0
 	for i := range c {
-		d := c[i] - a.C[i]
-		a.BiasK += d / float64(len(c))
-		a.RMSK += d * d / float64(len(c))
 		for k+1 < len(spans) && a.TimesS[i] > spans[k].EndS {
 			k++
 		}
+		d := c[i] - a.C[i]
+		if math.IsNaN(d) {
+			continue
+		}
+		a.BiasK += d / float64(a.Readings)
+		a.RMSK += d * d / float64(a.Readings)
 		worse := 1.0 // warmer
 		if spans[k].Step.Stage != nil && spans[k].Step.Stage.Heats {
 			worse = -1
