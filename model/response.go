@@ -5,7 +5,8 @@ import (
 	"sync"
 )
 
-// Response is how a place within a food follows its surroundings at the soonest: a kernel for each direction, along which heat comes in apart from the others.
+// Response is how a place within a food follows its surroundings at the soonest: a kernel for each direction, along which heat comes in apart
+// from the others.
 type Response struct {
 	settleS float64
 	stepS   float64
@@ -15,14 +16,18 @@ type Response struct {
 	known map[[2]int]float64
 }
 
-// What a place is at is Σ ∫ K(s)·u(t−s) ds over the directions, with u the temperature of what surrounds that direction and ∫ΣK = 1 (Duhamel's theorem, Carslaw & Jaeger 1959, section 1.14; from memory).
-// Behind a film that is at most h, a weaker one is the same as h towards a temperature between the surface and the surroundings; so every course of films up to h is covered too. A body
-// that is larger is covered as well: what lies about the smaller one in it is between the extremes. Therefore
+// What a place is at is Σ ∫ K(s)·u(t−s) ds over the directions, with u the temperature of what surrounds that direction and ∫ΣK = 1
+// (Duhamel's theorem, Carslaw & Jaeger 1959, section 1.14; from memory). Behind a film that is at most h, a weaker one is the same as h
+// towards a temperature between the surface and the surroundings; so every course of films up to h is covered too. A body that is larger is
+// covered as well: what lies about the smaller one in it is between the extremes
+// (strictly so where the surface is held; behind a film nearly). Therefore
 //
 //   - any sum of readings with weights that add up to nought is at most half of the range of u times ∫|the same sum of kernels|, and
-//   - as the kernel of a centre falls no faster, seen over any time w, than its last and slowest part, exp(−w/settle), nor does the distance to the coldest or the hottest that u can be.
+//   - as the kernel of a centre falls no faster, seen over any time w, than its last and slowest part, exp(−w/settle), nor does the
+//     distance to the coldest or the hottest that u can be.
 //
-// The kernel is log-concave, as a place in the middle is reached through one layer after the other. Own derivation; held against the exact model by a test.
+// The kernel is log-concave, as a place in the middle is reached through one layer after the other. Own derivation; held against the exact
+// model by a test.
 
 // responseRoots is how many parts of a series are kept: more than enough for instants at which a centre has moved by a thousandth.
 const responseRoots = 24
@@ -86,7 +91,8 @@ func newResponse(ds []direction, settleS float64) *Response {
 	return r
 }
 
-// series is the series of the middle of a slab, cylinder or sphere behind a film: λ·tan λ, λ·J1/J0 and 1−λ·cot λ are Bi (Carslaw & Jaeger 1959, sections 3.11, 7.7 and 9.4; from memory).
+// series is the series of the middle of a slab, cylinder or sphere behind a film: λ·tan λ, λ·J1/J0 and 1−λ·cot λ are Bi (Carslaw &
+// Jaeger 1959, sections 3.11, 7.7 and 9.4; from memory).
 func (d direction) series() (roots, weights []float64) {
 	bi := math.Min(d.biot, 1e7)
 	of := func(l float64) float64 { // rises through nought at the root
@@ -147,17 +153,18 @@ func (r *Response) in(came []float64, t float64) float64 {
 // Times are rounded to 2 %, and what follows grows with no more than the third power of them.
 const rounded = 1.05
 
-func hundredths(s float64) int {
+// fiftieths counts a time in steps of 2 %.
+func fiftieths(s float64) int {
 	if s <= 0 {
 		return math.MinInt
 	}
 	return int(math.Round(math.Log(s) * 50))
 }
 
-// Turn is the most by which the place can be off, afterS after a reading, the straight line through that reading and one beforeS before it; as a share of
-// the range of its surroundings. beforeS of 0: off the reading itself.
+// Turn is the most by which the place can be off, afterS after a reading, the straight line through that reading and one beforeS before it; as
+// a share of the range of its surroundings. beforeS of 0: off the reading itself.
 func (r *Response) Turn(beforeS, afterS float64) float64 {
-	key := [2]int{hundredths(beforeS), hundredths(afterS)}
+	key := [2]int{fiftieths(beforeS), fiftieths(afterS)}
 	r.mu.Lock()
 	defer r.mu.Unlock()
 	if most, ok := r.known[key]; ok {

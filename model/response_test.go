@@ -7,8 +7,9 @@ import (
 	"testing"
 )
 
-// TestResponseOfHeld: the middle of a body whose surface is held follows by the printed values: of a slab half way at α·t/d² of 0.3788, of a cylinder 0.2, of a sphere 0.1388;
-// from the series' first part, which is all that is left there but for less than 1e-3 (Carslaw & Jaeger 1959, sections 3.4, 7.6 and 9.3; from memory).
+// TestResponseOfHeld: the middle of a body whose surface is held follows by the printed values: of a slab half way at α·t/d² of 0.3788, of
+// a cylinder 0.2, of a sphere 0.1388; from the series' first part, which is all that is left there but for less than 1e-3 (Carslaw & Jaeger
+// 1959, sections 3.4, 7.6 and 9.3; from memory).
 func TestResponseOfHeld(t *testing.T) {
 	for _, c := range []struct {
 		name       string
@@ -32,8 +33,9 @@ func TestResponseOfHeld(t *testing.T) {
 	}
 }
 
-// TestResponse: the exact model never turns away from its straight line by more, with surroundings that jump between the extremes at drawn instants behind a film or a surface that is held,
-// nor comes nearer to the coldest and the hottest than the slowest part allows; and it comes near both.
+// TestResponse: the exact model never turns away from its straight line by more, with surroundings that jump between the extremes at drawn
+// instants behind a film or a surface that is held, nor comes nearer to the coldest and the hottest than the slowest part allows; and it comes
+// near both.
 func TestResponse(t *testing.T) {
 	const lo, hi = 0.0, 90.0
 	rng := rand.New(rand.NewPCG(5, 19))

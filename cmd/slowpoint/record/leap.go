@@ -30,26 +30,27 @@ type Leap struct {
 	strayC      float64 // the farthest of readings that went away and came back, °C; 0: it is told by how fast it was
 }
 
-// A leap is told from a move of the food in one of five ways. All figures are our own choice; what a food can do is computed (model.Quickest) and
-// held against histories of the exact model by tests.
+// A leap is told from a move of the food in one of five ways. All figures are our own choice; what a food can do is computed (model.Quickest)
+// and held against histories of the exact model by tests.
 //
-// It begins and ends too sharply. A food smooths what its surroundings do: in up to a quarter of the time in which it settles it does not move sharply
-// times as fast as in the three times as long before, and after (in 3000 drawn pieces, films and chains 6.6 times at most). A probe that was
-// pulled out or unplugged settles within a minute or two. Of a food that is not known little is taken for granted: that it is no slab under 20 mm, nor
-// a cylinder under 30 mm; and, for readings that lie further apart than unknownS, no slab under 36 mm (5 min apart) to 50 mm (10 min). A thinner piece may then be
-// doubted, which the thickness in the plan mends.
+// It begins and ends too sharply. A food smooths what its surroundings do: in up to a quarter of the time in which it settles it does not move
+// sharply times as fast as in the three times as long before, and after (in 3000 drawn pieces, films and chains 6.6 times at most). A probe
+// that was pulled out or unplugged settles within a minute or two. Of a food that is not known little is taken for granted: that it is no slab
+// under 20 mm, nor a cylinder under 30 mm; and, for readings that lie further apart than unknownS, no slab under 36 mm (5 min apart) to 50 mm
+// (10 min). A thinner piece may then be doubted, which the thickness in the plan mends.
 //
-// It is faster than a known food can move: twice over, for a plan whose thickness or conductivity is off, or by any amount if it is sharp as well.
+// It is faster than a known food can move: twice over, for a plan whose thickness or conductivity is off, or by any amount if it is sharp as
+// well.
 //
-// It is beyond what a known food can do, however its surroundings were (model.Response): it turns away further from the straight line that it was on,
-// or comes nearer to the coldest or the hottest of the plan, than food that is twice as quick could. So a slow sensor is told from the food too,
-// which it leaves too suddenly, or for the air too soon.
+// It is beyond what a known food can do, however its surroundings were (model.Response): it turns away further from the straight line that it
+// was on, or comes nearer to the coldest or the hottest of the plan, than food that is twice as quick could. So a slow sensor is told from the
+// food too, which it leaves too suddenly, or for the air too soon.
 //
-// It begins too sharply and is faster than the food can move, however it ends: a probe in a sleeve follows the air for minutes. Of a food that is not
-// known that is what the core of a slab of 20 mm does with its faces held at a temperature unknownK away.
+// It begins too sharply and is faster than the food can move, however it ends: a probe in a sleeve follows the air for minutes. Of a food that
+// is not known that is what the core of a slab of 20 mm does with its faces held at a temperature unknownK away.
 //
-// It is the last that was read, or the first, so that nothing shows how it ends or began. Then it must be sharp on the other side, and faster than the food can move; of
-// a food that is not known, of 10 K.
+// It is the last that was read, or the first, so that nothing shows how it ends or began. Then it must be sharp on the other side, and faster
+// than the food can move; of a food that is not known, of 10 K.
 const (
 	sharply     = 8.0
 	quietTimes  = 3.0   // how many times as long as the move the readings before and after it are looked at
@@ -71,9 +72,9 @@ const (
 	unknownK      = 120.0
 )
 
-// Readings have come back when, within backS, they go back by at least half of how far they were away, as fast as a leap, to within a quarter of it of
-// the last reading before it, and backLeast of them in a row stay there. Otherwise they are doubted to the end. A slow sensor is still on its way then,
-// and is doubted on (settled). Own choice.
+// Readings have come back when, within backS, they go back by at least half of how far they were away, as fast as a leap, to within a quarter
+// of it of the last reading before it, and backLeast of them in a row stay there. Otherwise they are doubted to the end. A slow sensor is
+// still on its way then, and is doubted on (settled). Own choice.
 const (
 	backS     = 3600.0
 	backLeast = 3
@@ -142,7 +143,8 @@ func newLeaper(log *Log, f Food) *leaper {
 	return s
 }
 
-// Within gives the log of a place within a food: the same readings, with where they leap. steps are those of the chain, rising; none: they are not known.
+// Within gives the log of a place within a food: the same readings, with where they leap. steps are those of the chain, rising; none: they are
+// not known.
 func (l *Log) Within(f Food, steps []Stretch) *Log {
 	out := *l
 	if len(l.C) < 3 {
@@ -216,9 +218,9 @@ func (s *leaper) withStrays(leaps []Leap) []Leap {
 	return out
 }
 
-// strays finds where the readings from i up to before end, of one step, fall and rise again (sign 1) or rise and fall again (−1) as no food does in
-// surroundings that stay as they are: heat from further out may first run on, and then the middle follows them. What turns once more within strayS is of something else until it
-// has come back, which a sensor has where it turns anew: there it shows what it is in.
+// strays finds where the readings from i up to before end, of one step, fall and rise again (sign 1) or rise and fall again (−1) as no food
+// does in surroundings that stay as they are: heat from further out may first run on, and then the middle follows them. What turns once more
+// within strayS is of something else until it has come back, which a sensor has where it turns anew: there it shows what it is in.
 func (s *leaper) strays(i, end int, sign, untilS float64) []Leap {
 	var out []Leap
 	least := math.Max(leastJump, 3*s.resK)
@@ -396,8 +398,8 @@ func (s *leaper) beyond(i, j int) bool {
 	return math.Abs(move) > noise+s.food.Follows.Turn(0, twiceOver*long)*(s.hi-s.lo)
 }
 
-// onset is the last reading before a leap between i and j: the first after which it turns that way, by more than noise and than a small part of the leap.
-// A probe that is pulled out shortly before a reading has moved by little at that.
+// onset is the last reading before a leap between i and j: the first after which it turns that way, by more than noise and than a small part
+// of the leap. A probe that is pulled out shortly before a reading has moved by little at that.
 func (s *leaper) onset(i, j int) int {
 	away := s.c[j] - s.c[i]
 	least := math.Max(onsetK, math.Max(3*s.resK, math.Abs(away)*onsetPart))
@@ -413,7 +415,8 @@ func (s *leaper) onset(i, j int) int {
 	return i
 }
 
-// back finds the reading with which a leap after base has come back; the number of readings if it has not. far is the reading farthest away on its side.
+// back finds the reading with which a leap after base has come back; the number of readings if it has not. far is the reading farthest away on
+// its side.
 func (s *leaper) back(base int) (back int, far float64) {
 	n := len(s.c)
 	fast := math.Max(s.spans[len(s.spans)-1], s.oneS)
@@ -449,8 +452,8 @@ func (s *leaper) back(base int) (back int, far float64) {
 	return n, s.c[base] + away
 }
 
-// maySee tells whether a reading k may be of the food again after a leap by away (K, with its sign) behind base. In another step a probe that lies in the air
-// passes what the food was at on its way to the new surroundings; only what goes the other way has been put back.
+// maySee tells whether a reading k may be of the food again after a leap by away (K, with its sign) behind base. In another step a probe that
+// lies in the air passes what the food was at on its way to the new surroundings; only what goes the other way has been put back.
 func (s *leaper) maySee(base, k int, away float64) bool {
 	a, b := s.step(base), s.step(k)
 	return a == b || b < 0 || s.steps[b].Heats == (away > 0)
@@ -466,8 +469,8 @@ func (s *leaper) step(i int) int {
 	return -1
 }
 
-// settled is the reading, from k on, at which a sensor that has come back to k is no longer on its way: a slow one that has come to within a quarter takes
-// as long again for each further quarter. It is waited for twice that, and no longer than it moves.
+// settled is the reading, from k on, at which a sensor that has come back to k is no longer on its way: a slow one that has come to within a
+// quarter takes as long again for each further quarter. It is waited for twice that, and no longer than it moves.
 func (s *leaper) settled(base, k int) int {
 	far, side := k-1, s.c[k-1]-s.c[base]
 	for x := k - 1; x > base; x-- { // the last that was as far away as any
@@ -488,7 +491,9 @@ func (s *leaper) settled(base, k int) int {
 
 // putIn tells whether the probe was put into the food just after base; far is where it went.
 func (s *leaper) putIn(base int, far float64) bool {
-	if k := s.step(base); s.t[base]-s.t[0] > putInS || far >= boils || k >= 0 && s.steps[k].Heats && far > s.c[base] { // food comes cold to a step that heats it
+	k := s.step(base)
+	heated := k >= 0 && s.steps[k].Heats && far > s.c[base] // food comes cold to a step that heats it
+	if s.t[base]-s.t[0] > putInS || far >= boils || heated {
 		return false
 	}
 	lo, hi := s.c[0], s.c[0]
@@ -513,7 +518,8 @@ func (l *Log) leapt(p *Leap, known bool) cell.Error {
 		which = "it and what follows up to " + rowOf(l.src, l.Lines[p.Last]) + " are"
 	}
 	if p.strayC != 0 {
-		return strayed.problem(at, cell.Warning, "", typed, from, long, shownC(p.strayC), spanOf(l.TimesS[min(p.Last+1, len(l.C)-1)]-l.TimesS[p.Before]), which)
+		lasted := spanOf(l.TimesS[min(p.Last+1, len(l.C)-1)] - l.TimesS[p.Before])
+		return strayed.problem(at, cell.Warning, "", typed, from, long, shownC(p.strayC), lasted, which)
 	}
 	food := "the core of a food can move unless it is thin"
 	if known {

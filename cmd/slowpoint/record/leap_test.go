@@ -72,8 +72,8 @@ func drawnProbe(t *testing.T, rng *rand.Rand, stepS, noiseK float64) (*model.Pro
 	return p, c, f, stretches(h, from), what
 }
 
-// TestNoFalseLeaps: what the exact model says that the centre of a food does is never a leap, whatever the piece, the film and the interval; nor is
-// any part of it that a logger may have kept.
+// TestNoFalseLeaps: what the exact model says that the centre of a food does is never a leap, whatever the piece, the film and the interval;
+// nor is any part of it that a logger may have kept.
 func TestNoFalseLeaps(t *testing.T) {
 	rng := rand.New(rand.NewPCG(7, 31))
 	thick := 0

@@ -71,9 +71,10 @@ func pulled(h *model.History, rng *rand.Rand, stepS float64, ever bool) (p pull,
 	return p, false, ""
 }
 
-// TestPulledOut: a probe that was pulled out for 2 to 30 min, or for good, with a time constant of 0.2 to 8 min and a logger that reads every 0.5 to 10 min, never meets a limit by its
-// readings of the air that the food did not meet, where the plan describes a food that settles in 20 min or more. Of thinner food, and of food that nobody described, some remain: a thin
-// piece can do what a slow probe does. How many do is held.
+// TestPulledOut: a probe that was pulled out for 2 to 30 min, or for good, with a time constant of 0.2 to 8 min and a logger that reads every
+// 0.5 to 10 min, never meets a limit by its readings of the air that the food did not meet, where the plan describes a food that settles in 20
+// min or more. Of thinner food, and of food that nobody described, some remain: a thin piece can do what a slow probe does. How many do is
+// held.
 func TestPulledOut(t *testing.T) {
 	limits := pullLimits()
 	kinds := []struct {
