@@ -187,6 +187,7 @@ type (
 		Place    string          `json:"place"`
 		AtMM     json.RawMessage `json:"at_mm"`
 		Readings int             `json:"readings"`
+		LeftOut  int             `json:"doubtful_left_out,omitempty"`
 		Bias     json.RawMessage `json:"bias_K"`
 		RMS      json.RawMessage `json:"rms_K"`
 		Colder   json.RawMessage `json:"colder_while_heated_K"`
@@ -624,7 +625,7 @@ func recordsIn(ms []Measured) []recordJSON {
 		}
 		one.Gaps = append(gaps, ']')
 		if a := m.Against; a != nil {
-			one.Against = &againstJSON{Air: a.Air, Place: a.PlaceName, AtMM: appendPlace(nil, a.Place), Readings: a.Readings, Bias: fixedNumber(&a.BiasK, 4), RMS: fixedNumber(&a.RMSK, 4),
+			one.Against = &againstJSON{Air: a.Air, Place: a.PlaceName, AtMM: appendPlace(nil, a.Place), Readings: a.Readings, LeftOut: a.LeftOut, Bias: fixedNumber(&a.BiasK, 4), RMS: fixedNumber(&a.RMSK, 4),
 				Colder: fixedNumber(&a.ColderK, 4), ColderS: exactNumber(&a.ColderS), Warmer: fixedNumber(&a.WarmerK, 4), WarmerS: exactNumber(&a.WarmerS),
 				Slowest: fixedNumber(&a.SlowestK, 4), SlowestS: exactNumber(&a.SlowestS)}
 			for _, f := range a.Fitted {

@@ -53,6 +53,7 @@ type Against struct {
 	TimesS, C []float64 // the prediction
 	Air       bool      // made with recorded surroundings of a step, where there were any
 	Readings  int       // that were compared
+	LeftOut   int       // doubtful ones, which were not
 	BiasK     float64   // mean of record minus prediction
 	RMSK      float64
 	ColderK   float64 // by how much the record was colder at most, in steps that heat, at ColderS; 0: nowhere
@@ -192,6 +193,9 @@ func (m *Measured) compared(h *Head) []string {
 		key = "against air"
 	}
 	out := []string{say(key, a.PlaceName, a.Readings, signed(a.BiasK), h.difference(a.RMSK, up))}
+	if a.LeftOut > 0 {
+		out = append(out, say("against left out", a.LeftOut))
+	}
 	switch {
 	case a.ColderK > 0 && a.WarmerK > 0:
 		out = append(out, say("against both", h.difference(a.ColderK, up), duration(a.ColderS, nearest), h.difference(a.WarmerK, up), duration(a.WarmerS, nearest)))

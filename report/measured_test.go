@@ -23,7 +23,7 @@ func recordedRoast(t *testing.T) *Product {
 	miss.Verdict, miss.MarginK, miss.MarginS, miss.Why = rules.NotMet, ptr(-4.25), nil, "the slowest point came to 66 °C."
 	m := Measured{Name: "Trial 7", What: "slowest point", File: "logs/seven.csv", SHA256: strings.Repeat("ab", 32), Column: "Core", Unit: "°C", Readings: 3, StepS: 1800, ResolutionK: 1,
 		AccuracyK: ptr(0.5), Missing: 2, Gaps: [][2]float64{{1800, 3600}}, Before: 4, History: h, Judgement: rules.Conclude([]rules.Finding{miss}, nil),
-		Against: &Against{PlaceName: "slowest point", TimesS: []float64{0, 3600}, C: []float64{8, 76.5}, Readings: 3, BiasK: -3.5, RMSK: 6.1, ColderK: 10.5, ColderS: 3600,
+		Against: &Against{PlaceName: "slowest point", TimesS: []float64{0, 3600}, C: []float64{8, 76.5}, Readings: 3, LeftOut: 2, BiasK: -3.5, RMSK: 6.1, ColderK: 10.5, ColderS: 3600,
 			Fitted: []Fitted{{What: "film coefficient of Roast", Value: 14.2, Low: 13.1, High: 15.4, Typed: 20, Unit: "W/(m²·K)"}, {What: "conductivity", Low: 0.2, High: 4, Vague: true}}, FittedRMS: 0.4}}
 	lost := Measured{Name: "Trial 8", What: "slowest point", File: "logs/eight.csv"}
 	p.Measured = []Measured{m, lost}
@@ -51,6 +51,7 @@ func TestRecordsStandApart(t *testing.T) {
 		"Left out: 4 readings before the start and 0 after the end of the chain",
 		"Accuracy: 0.5 °C (0.9 °F)",
 		"the record lies −3.5 °C (−6.3 °F) from it on average, 6.1 °C (11.0 °F) root mean square.",
+		"Doubtful readings were left out of that, and of what is fitted: 2.",
 		"colder than predicted by up to 10.5 °C (18.9 °F) while heated (1 h); never warmer",
 		"film coefficient of Roast 14.2 (13.1 to 15.4) W/(m²·K), taken in the plan 20",
 		"conductivity not told by this record (0.200 to 4.00)",

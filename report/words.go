@@ -396,6 +396,7 @@ var words = map[string]string{
 	"echo c":                    "Understood as",
 	"against":                   "Against the prediction (%s, %d readings, steps as long as they were): the record lies %s from it on average, %s root mean square.",
 	"against air":               "Against the prediction with the surroundings as recorded (%s, %d readings, steps as long as they were): the record lies %s from it on average, %s root mean square.",
+	"against left out":          "Doubtful readings were left out of that, and of what is fitted: %d.",
 	"against both":              "On the unfavourable side: colder than predicted by up to %s while heated (%s), warmer by up to %s in the other steps (%s).",
 	"against colder":            "On the unfavourable side: colder than predicted by up to %s while heated (%s); never warmer in the other steps.",
 	"against warmer":            "On the unfavourable side: never colder than predicted while heated; warmer by up to %s in the other steps (%s).",

@@ -63,7 +63,8 @@ func (p printed) without(k int) printed {
 	return p.gapped()
 }
 
-// inAir is a course beside the surroundings that are printed: as a record of them, at each end of their range in turn, or as no more than that range.
+// inAir is a course beside the surroundings that are printed: as a record of them, at each end of their range in turn, or as no more than that
+// range.
 func (p printed) inAir(recorded bool) printed {
 	r := *p.r
 	if p.stated && !recorded {
@@ -80,8 +81,9 @@ func (p printed) inAir(recorded bool) printed {
 	return p
 }
 
-// Each inner point of a published course lies within what the course without it allows in the gap; and it is known which courses nothing bounds: of chills whose first reading is followed
-// by a gap, a record of the air alone bounds none, for the roast may have been hotter outside.
+// Each inner point of a published course lies within what the course without it allows in the gap; and it is known which courses nothing
+// bounds: of chills whose first reading is followed by a gap, a record of the air alone bounds none, for the roast may have been hotter
+// outside.
 func TestPublishedPointsLieWithinGaps(t *testing.T) {
 	bounded := map[string]int{}
 	left := 0
@@ -123,8 +125,8 @@ func TestPublishedPointsLieWithinGaps(t *testing.T) {
 	}
 }
 
-// allows is what a printed course allows between two points: by itself anything over an hour or three times the usual, and in a stated range of the surroundings no more than all that
-// was read up to there and they, or than its beginning where the core was seen to fall before.
+// allows is what a printed course allows between two points: by itself anything over an hour or three times the usual, and in a stated range
+// of the surroundings no more than all that was read up to there and they, or than its beginning where the core was seen to fall before.
 func (p printed) allows(i int) region {
 	r := p.r
 	a := region{lo: math.Min(r.C[i], r.C[i+1]), hi: math.Max(r.C[i], r.C[i+1])}
@@ -249,7 +251,8 @@ func (p printed) cooled(from, to, s float64) (met, missed bool) {
 	return r.C[top] > from && last-earliest <= s, r.C[top] > from && soonest-latest > s
 }
 
-// The program never says met of a published course where its points do not prove it, nor not met where they do not; and says either where they do.
+// The program never says met of a published course where its points do not prove it, nor not met where they do not; and says either where they
+// do.
 func TestPublishedCoursesJudged(t *testing.T) {
 	count := map[string]int{}
 	for _, whole := range printedCourses(t) {

@@ -2,6 +2,7 @@ package main
 
 import (
 	"fmt"
+	"math"
 	"strings"
 
 	"slowpoint/model"
@@ -32,7 +33,7 @@ func fittingOf(words string) (f fitting, err error) {
 const mostFitted = 400
 
 // fitTo finds the film coefficients of the steps from first on, and the conductivity if asked, with which the prediction follows a record.
-// on are the times of its readings on the clock of the steps, s, and c what it read.
+// on are the times of its readings on the clock of the steps, s, and c what it read, NaN where that is doubtful.
 func (f fitting) fitTo(p *model.Product, steps []model.Step, first int, on, c []float64, accuracyK *float64, resolutionK float64, a *report.Against) {
 	if !f.film && !f.conductivity {
 		return
@@ -52,7 +53,9 @@ func (f fitting) fitTo(p *model.Product, steps []model.Step, first int, on, c []
 	}
 	stride := max(1, (len(on)+mostFitted-1)/mostFitted)
 	for i := 0; i < len(on); i += stride {
-		rec.TimesS, rec.C = append(rec.TimesS, on[i]), append(rec.C, c[i])
+		if !math.IsNaN(c[i]) {
+			rec.TimesS, rec.C = append(rec.TimesS, on[i]), append(rec.C, c[i])
+		}
 	}
 	got, err := job.Fit(&rec)
 	if err != nil {

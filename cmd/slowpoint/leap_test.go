@@ -2,6 +2,7 @@ package main
 
 import (
 	"bytes"
+	"encoding/json"
 	"fmt"
 	"math"
 	"os"
@@ -24,10 +25,10 @@ func leapPlan(t *testing.T, dir string) (whole, bare string) {
 	whole, bare = filepath.Join(dir, "plan"), filepath.Join(dir, "bare")
 	writePlan(t, bare, map[string]string{"Limits": limits})
 	writePlan(t, whole, map[string]string{
-		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nTray,Oven,slab,40,Mash,5\nHot tray,Chiller,slab,40,Mash,85\nThin tray,Chiller,slab,25,Mash,85\nHot slice,Ice bath,slab,4,Mash,85\n",
+		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nTray,Oven,slab,40,Mash,5\nSlow tray,Slow oven,slab,40,Mash,5\nHot tray,Chiller,slab,40,Mash,85\nThin tray,Chiller,slab,25,Mash,85\nHot slice,Ice bath,slab,4,Mash,85\nBlast tray,Blast chiller,slab,40,Mash,85\n",
 		"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Source\nMash,0.5,1050,3600,no,invented\n",
 		"Steps": "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\n" +
-			"Oven,bake,cook,120,film,130,15\nChiller,chill,cool,480,film,1,10\nIce bath,chill,cool,480,film,1,500\n",
+			"Oven,bake,cook,120,film,130,15\nSlow oven,bake,cook,120,film,80,15\nChiller,chill,cool,480,film,1,10\nIce bath,chill,cool,480,film,1,500\nBlast chiller,chill,cool,480,film,1,60\n",
 		"Limits": limits,
 	})
 	return whole, bare
@@ -74,6 +75,16 @@ func firstBelow(c []float64, most float64) int {
 	return len(c)
 }
 
+// firstAbove is the first reading above a temperature.
+func firstAbove(c []float64, least float64) int {
+	for i := range c {
+		if c[i] > least {
+			return i
+		}
+	}
+	return len(c)
+}
+
 // TestLeapsAreNotMet: a record with a probe that left the food is cannot tell where its readings of something else would meet a limit; what a
 // food does is judged as it was. The courses are the exact model's, with a film that makes them miss the limit (10 W/m²K) or meet it (40 W/m²K).
 func TestLeapsAreNotMet(t *testing.T) {
@@ -109,6 +120,14 @@ func TestLeapsAreNotMet(t *testing.T) {
 		}
 		return append(out, c...)
 	}
+	slowly := centreOf(t, 0.04, 5, 80, 15, 300, 3900) // out at 47.8 °C into 80 °C for four readings, a sensor of 5 min
+	slowly = append(slowly[:firstAbove(slowly, 46)], 47.8, 68.1, 75.6, 78.4, 79.4, 56.7, 51.2, 49.9, 50.1, 50.8, 51.5, 52.2)
+	straight := centreOf(t, 0.04, 85, 1, 60, 60, 28800)
+	straight = straight[:firstBelow(straight, 63)] // to 2.5 °C by 4 °C a minute
+	for c := 63.0; c > 2.5; c -= 4 {
+		straight = append(straight, c)
+	}
+	straight = append(straight, rests(nil, 120, 2.5)...)
 	put := rests(good, 4, 21.3)
 	slice := rests(centreOf(t, 0.004, 85, 1, 500, 60, 28800), 20, 85)
 	for _, c := range []struct {
@@ -134,6 +153,8 @@ func TestLeapsAreNotMet(t *testing.T) {
 		{"unplugged, at room temperature", away(slow(60), 31.6, 20.5, 60, 0, 0), 60, 1, "Hot tray", "cool", "", cannotTell, "faster than this food"},
 		{"put back after 10 min", away(slow(60), 31.6, 3.0, 60, 0, 10), 60, 1, "Hot tray", "cool", "", cannotTell, "up to line"},
 		{"fallen out into the oven", fallen, 60, 1, "Tray", "cook", "", cannotTell, "faster than this food can move there"},
+		{"in the oven's air by a sensor of 5 min, and back", slowly, 300, 1, "Slow tray", "cook", "", cannotTell, "kept, and doubtful"},
+		{"straight down by 4 °C a minute", straight, 60, 1, "Blast tray", "", "", cannotTell, "faster than this food can move there"},
 		{"chilled well", good, 60, 1, "Hot tray", "cool", "", met, ""},
 		{"chilled well, to the degree", good, 60, 0, "Hot tray", "cool", "", met, ""},
 		{"cooked well", bake, 60, 1, "Tray", "cook", "", met, ""},
@@ -200,5 +221,61 @@ func TestFoodAt(t *testing.T) {
 		if (f != nil) != c.within || f != nil && ((f.SettleS > 0) != c.settles || (f.ShareS > 0) != c.ranges || (f.HighC == 60) != c.ranges) {
 			t.Errorf("%s: %+v", c.name, f)
 		}
+	}
+}
+
+// TestDoubtfulLeftOut: readings of something else are neither held against the prediction nor fitted: both say of a probe that fell out what they say of one that did not,
+// but for the readings that are left out, and tell how many. The courses are the exact model's, with the film of the plan.
+func TestDoubtfulLeftOut(t *testing.T) {
+	dir := t.TempDir()
+	whole, _ := leapPlan(t, dir)
+	plan := map[string]string{
+		"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nHot tray,Chiller,slab,40,Mash,85\n",
+		"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\nChiller,chill,cool,480,film,1,10\n",
+		"Limits":   "Limit,Rule,Stage,Applies to,From (°C),To (°C),Time (min),Clock starts,Code,Clause,Edition\nFirst,cool,cool,all,60,21,120,crossing,invented,2,1\n",
+		"Records":  "Record,Product,File,Time column,Temperature column,What it measured,Starts at,Accuracy (°C difference)\nR,Hot tray,core.csv,Elapsed,Core,slowest point,chill,0.2\n",
+	}
+	good := centreOf(t, 0.04, 85, 1, 10, 60, 28800)
+	out := slices.Clone(good)
+	for i := 100; i < 130; i++ {
+		out[i] = 3 + 0.1*math.Sin(float64(i))
+	}
+	for _, c := range []struct {
+		name    string
+		c       []float64
+		leftOut int
+	}{{"stayed in", good, 0}, {"fell out", out, 30}} {
+		t.Run(strings.ReplaceAll(c.name, " ", "-"), func(t *testing.T) {
+			writePlan(t, whole, plan)
+			leapFile(t, filepath.Join(whole, "core.csv"), 60, 1, c.c)
+			var said, errs bytes.Buffer
+			to := filepath.Join(dir, "fit")
+			if code := run([]string{"check", whole, "--fit", "film", "--no-pdf", "--date", "2026-01-31", "--out", to}, nil, &said, &errs); code > 1 {
+				t.Fatalf("exit %d: %s", code, errs.String())
+			}
+			data, err := os.ReadFile(filepath.Join(to, "results.json"))
+			if err != nil {
+				t.Fatal(err)
+			}
+			var got struct {
+				Products []struct {
+					Records []struct {
+						Against struct {
+							Readings int
+							LeftOut  int     `json:"doubtful_left_out"`
+							RMS      float64 `json:"rms_K"`
+							Fitted   []struct{ Value float64 }
+						} `json:"against_prediction"`
+					}
+				}
+			}
+			if err := json.Unmarshal(data, &got); err != nil || len(got.Products) != 1 || len(got.Products[0].Records) != 1 {
+				t.Fatal(err, string(data))
+			}
+			a := got.Products[0].Records[0].Against
+			if a.LeftOut != c.leftOut || a.Readings != len(c.c)-c.leftOut || a.RMS > 0.05 || len(a.Fitted) != 1 || math.Abs(a.Fitted[0].Value-10) > 0.1 {
+				t.Errorf("%+v, want %d left out and a film of 10\n%s", a, c.leftOut, errs.String())
+			}
+		})
 	}
 }

@@ -57,7 +57,6 @@ func settingOf(rec *workbook.Record, path string, today time.Time) record.Settin
 	if rec.AccuracyK != nil {
 		s.AccuracyK = *rec.AccuracyK
 	}
-	s.Food = foodAt(rec)
 	return s
 }
 
@@ -80,7 +79,7 @@ func foodAt(rec *workbook.Record) *record.Food {
 	if q, ok := model.Quickest(&p.Product, at, lo, hi, filmOff*film); ok {
 		f.SettleS = q.SettleS
 		if whole {
-			f.ShareS, f.LowC, f.HighC = q.ShareS, lo, hi
+			f.ShareS, f.LowC, f.HighC, f.Follows = q.ShareS, lo, hi, q.Follows
 		}
 	}
 	return f
@@ -128,6 +127,15 @@ type ran struct {
 	first  int       // the first step that it covers
 	startS []float64 // of each covered step, s from the first reading; and behind the last its end
 	clockS float64   // how finely these are told
+}
+
+// stretches are the covered steps on the clock of the log.
+func (w *ran) stretches(steps []model.Step) (out []record.Stretch) {
+	for i := 0; i+1 < len(w.startS); i++ {
+		st := steps[w.first+i].Stage
+		out = append(out, record.Stretch{StartS: w.startS[i], EndS: w.startS[i+1], Heats: st != nil && st.Heats})
+	}
+	return out
 }
 
 // fault is a mistake in a cell of a record's row.
@@ -428,6 +436,9 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 	}
 	nextDay(rec, log, m)
 	inexact(rec, m)
+	if f := foodAt(rec); f != nil {
+		log = log.Within(*f, way.stretches(p.Steps))
+	}
 	re, lines := recording(rec, log, p, way, m)
 	if len(re.TimesS) == 0 {
 		m.Problems.Add(*fault(rec, "Starts at", "", "leaves no readings within the steps", "correct it"))
@@ -641,11 +652,19 @@ func (r *runner) compare(rec *workbook.Record, p *workbook.Product, out *report.
 		}
 	}
 	stride := max(1, (len(re.TimesS)+mostCompared-1)/mostCompared)
-	var on, c []float64 // the times on the clock of the prediction, and what was read
+	var on, c []float64 // the times on the clock of the prediction, and what was read; NaN: doubtful
 	for i := 0; i < len(re.TimesS); i += stride {
-		a.TimesS, on, c = append(a.TimesS, re.TimesS[i]), append(on, before+re.TimesS[i]), append(c, re.C[i])
+		read := re.C[i]
+		if _, doubted := slices.BinarySearch(re.Doubted, i); doubted {
+			read = math.NaN()
+			a.LeftOut++
+		}
+		a.TimesS, on, c = append(a.TimesS, re.TimesS[i]), append(on, before+re.TimesS[i]), append(c, read)
 	}
-	a.Readings = len(on)
+	if a.Readings = len(on) - a.LeftOut; a.Readings == 0 {
+		m.Problems.Add(cell.Error{At: rec.At, Level: cell.Note, Msg: "The record was not compared with the prediction: all of its readings are doubtful"})
+		return
+	}
 	a.C = make([]float64, len(on))
 	h.Course(a.Place, on, a.C)
 	var slow []float64
@@ -679,12 +698,15 @@ func asItWas(plan []model.Step, lengths []float64, way *ran) (steps []model.Step
 func differ(a *report.Against, spans []model.Span, c, slow []float64) {
 	k := 0
 	for i := range c {
-		d := c[i] - a.C[i]
-		a.BiasK += d / float64(len(c))
-		a.RMSK += d * d / float64(len(c))
 		for k+1 < len(spans) && a.TimesS[i] > spans[k].EndS {
 			k++
 		}
+		d := c[i] - a.C[i]
+		if math.IsNaN(d) {
+			continue
+		}
+		a.BiasK += d / float64(a.Readings)
+		a.RMSK += d * d / float64(a.Readings)
 		worse := 1.0 // warmer
 		if spans[k].Step.Stage != nil && spans[k].Step.Stage.Heats {
 			worse = -1

@@ -24,6 +24,7 @@ var update = flag.Bool("update", false, "write what comes out into testdata")
 // A trial is a file of a logger with its settings and what must come of it; see testdata/README.txt.
 type trial struct {
 	set        Setting
+	food       *Food // nil: no place within a food
 	content    []byte
 	head, want string
 }
@@ -84,8 +85,8 @@ func (c *trial) setting(t *testing.T, key, value string) {
 	case "correction":
 		c.set.Corrections, err = strconv.ParseFloat(value, 64)
 	case "settles":
-		c.set.Food = &Food{LowC: math.NaN(), HighC: math.NaN()}
-		c.set.Food.SettleS, err = strconv.ParseFloat(value, 64)
+		c.food = &Food{LowC: math.NaN(), HighC: math.NaN()}
+		c.food.SettleS, err = strconv.ParseFloat(value, 64)
 	case "today":
 		c.set.Today, err = time.Parse("2006-01-02", value)
 	default:
@@ -164,7 +165,11 @@ func TestTrials(t *testing.T) {
 			}
 			c := parseTrial(t, string(data))
 			c.write(t)
-			got := said(Read(c.set))
+			log, problems := Read(c.set)
+			if log != nil && c.food != nil {
+				log = log.Within(*c.food, nil)
+			}
+			got := said(log, problems)
 			if *update {
 				if err := os.WriteFile(name, []byte(c.head+"\nexpect\n"+got), 0o644); err != nil {
 					t.Fatal(err)

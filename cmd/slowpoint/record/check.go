@@ -34,7 +34,7 @@ func (r *reader) constant(t *taker) {
 func (r *reader) check(t *taker, start float64) {
 	r.gaps(t, start)
 	r.jumps(t)
-	r.leaps(t)
+	r.log.src, r.log.temp = r.src, t.lay.temp
 	r.stopped(t)
 	r.years(t)
 }

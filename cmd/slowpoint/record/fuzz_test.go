@@ -31,7 +31,7 @@ func FuzzRead(f *testing.F) {
 		if err := os.WriteFile(name, data, 0o644); err != nil {
 			t.Fatal(err)
 		}
-		l, problems := Read(Setting{File: name, Time: time, Temperature: temp, Decimal: decimal, Food: &Food{SettleS: 300, ShareS: 0.001, HighC: 90}})
+		l, problems := Read(Setting{File: name, Time: time, Temperature: temp, Decimal: decimal})
 		if (l == nil) != (problems.Faults() > 0) {
 			t.Fatalf("a log is there: %v, with %v", l != nil, problems)
 		}
@@ -41,7 +41,7 @@ func FuzzRead(f *testing.F) {
 		if len(l.C) == 0 || len(l.C) != len(l.TimesS) || len(l.C) != len(l.Lines) || l.TimesS[0] != 0 {
 			t.Fatalf("%d readings, %d times, %d lines", len(l.C), len(l.TimesS), len(l.Lines))
 		}
-		for _, p := range l.Leaps {
+		for _, p := range l.Within(Food{SettleS: 300, ShareS: 0.001, HighC: 90}, []Stretch{{EndS: 900, Heats: true}, {StartS: 900, EndS: 4000}}).Leaps {
 			if p.Before < 0 || p.First <= p.Before || p.Last < p.First-1 || p.Last >= len(l.C) {
 				t.Fatalf("a leap of %d readings: %+v", len(l.C), p)
 			}

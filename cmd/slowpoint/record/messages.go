@@ -136,6 +136,7 @@ var (
 	frozen      = saying{"is read {1} times in a row, up to {2}: the sensor may have stopped", "check the logger"}
 	doubtful    = saying{"jumps away from {1} before and {2} after it, and is kept", "look at the record there: a loose plug or a moved probe?"}
 	leapt       = saying{"comes {2} after {1}, faster than {3}; {4} kept, and doubtful", "was the probe pulled out or unplugged, write in Starts at when the readings of the food begin or end (end 13:30); was it moved, look at the record there"}
+	strayed     = saying{"comes {2} after {1}, goes on to {3} and comes back within {4}, as no food does where its surroundings stay as they are; {5} kept, and doubtful", "was the probe out of the food, or the food out of its surroundings, look at the record there; Starts at tells when another step began"}
 	putInto     = saying{"comes {2} after {1}, as when the probe is put into the food; what was read before is kept", "if so, write in Starts at when the first step began"}
 	farApart    = saying{"The readings lie {1} apart as a rule; in more than {2} without a reading it may have been anywhere", "let a logger record it, or read it every hour"}
 	gap         = saying{"No reading between {1} and {2}: {3}, where {4} is usual", ""}

@@ -26,7 +26,6 @@ type Setting struct {
 	Missing     []string            // further words for a reading that is missing
 	Corrections float64             // K added to every reading
 	AccuracyK   float64             // of the instrument, K; 0 if not stated
-	Food        *Food               // what is known of the place that it shows; nil where that may leap: the surface, the surroundings
 	Today       time.Time           // for dates in the future or long ago; the zero time: they are not looked for
 	Cells       map[string]cell.Ref // where each setting stands, by the column of the sheet Records or the item of the sheet Plan; the zero Ref if nowhere
 }
@@ -47,13 +46,16 @@ type Log struct {
 	ResolutionK  float64   // smallest step of the readings, K
 	Gaps         []int     // i: readings are lacking between i and i+1, which lie more than three times the usual time or more than an hour apart
 	Doubtful     []int     // readings that jump faster than their neighbours allow, or may be cut off
-	Leaps        []Leap    // of a place within a food, rising; their problems are not among Problems: readings outside the steps do not count
+	Leaps        []Leap    // of a place within a food (Within), rising; their problems are not among Problems: readings outside the steps do not count
 	Missing      int       // rows without a reading
 	Rows         int       // rows of the table
 	About        []string  // lines above the table, as typed
 	How          string    // how the file was read, as far as that had to be decided: "cells divided by semicolons, decimal comma"
 	Echo         []Echo    // first and last rows as they were understood
 	Problems     cell.Errors
+
+	src  source // for the places of readings
+	temp int    // column of the temperatures
 }
 
 // Echo is a row of the file as typed and as understood.
@@ -201,7 +203,10 @@ func rounded(n int) string {
 }
 
 // row names a row of the file: "line 48", "row 48".
-func (r *reader) row(line int32) string { return fmt.Sprintf("%s %d", r.src.word(), line) }
+func (r *reader) row(line int32) string { return rowOf(r.src, line) }
+
+// rowOf names a row of a file.
+func rowOf(src source, line int32) string { return fmt.Sprintf("%s %d", src.word(), line) }
 
 // ask tells that a setting is needed. The first argument of its wording is the file or the sheet.
 func (r *reader) ask(s saying, setting, typed string, args ...string) {
