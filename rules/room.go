@@ -112,12 +112,11 @@ func (v *view) closerRoom(q question, cs []candidate, least float64, where *mode
 		}
 		y := v.stepwise(score, v.h.Axes(x), t)
 		p := v.h.PlaceAt(y)
-		r := math.NaN()
-		if q.room != nil {
-			r = q.room(v.path(p))
-		} else {
-			r = roomBy(q.measure, v.exactly(y), least)
+		room := q.room
+		if room == nil {
+			room = func(p path) float64 { return roomBy(q.measure, p, least) }
 		}
+		r := room(v.exactly(y))
 		if !(r < least-roomK/2) {
 			return least, where
 		}
