@@ -90,12 +90,16 @@ func (v *view) risky(s scope, q question, t tilt) []model.Axes {
 	if q.risks == nil || v.h.Recorded || s.surfaceOnly || len(s.spots) == 0 || !v.gridded() {
 		return nil
 	}
+	times, rows := v.c.times, v.c.rows
+	if v.c.roughly(); v.c.rough != nil && len(s.spots) >= manySpots {
+		times, rows = v.c.roughT, v.c.rough
+	}
 	var found []model.Axes
 	for _, of := range q.risks(t) {
 		nearest, by := make([]int, of.leaps), make([]float64, of.leaps)
 		least := slices.Repeat([]float64{1}, of.leaps)
 		for _, i := range s.spots {
-			of.fill(path{t: v.c.times, c: v.c.rows[i]}, by)
+			of.fill(path{t: times, c: rows[i]}, by)
 			for n, r := range by {
 				if r < least[n] {
 					nearest[n], least[n] = i, r

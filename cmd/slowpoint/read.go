@@ -147,8 +147,11 @@ func count(n int, noun string) string {
 	return fmt.Sprintf("%d %ss", n, noun)
 }
 
-// minutes writes a duration in minutes, from ten hours on in hours and minutes.
+// minutes writes a duration in minutes, from ten hours on in hours and minutes and below one minute in seconds.
 func minutes(s float64) string {
+	if x := math.Abs(s); x > 0 && x < 59.5 {
+		return fmt.Sprintf("%.3g s", s)
+	}
 	if m := math.Round(s / 60); m >= 600 {
 		if rest := math.Mod(m, 60); rest > 0 {
 			return fmt.Sprintf("%.0f h %02.0f min", (m-rest)/60, rest)

@@ -131,7 +131,7 @@ var (
 	wrongForm   = saying{"is formatted as a date, a time or a percentage, and is no temperature", "check the column, and give its cells a number format"}
 	formulaUsed = saying{"{1} of the cells hold formulas; their stored results are used ({2})", ""}
 	outside     = saying{"is beyond what is read as a temperature of food or its surroundings, {1} to {2}, and is taken as missing: {3} of {4} readings ({5})", ""}
-	constant    = saying{"is every one of the {1} readings: the sensor does not follow", "choose another channel or record; of surroundings that did stay at one value, leave the record out and write it as the Medium temperature of the step"}
+	constant    = saying{"is every one of the {1} readings: the sensor does not follow", "choose another channel or record; of surroundings that did stay at one value, leave the record out and write it as the Temperature of the step in the sheet Steps"}
 	cutReading  = saying{"stands at the end of the file, in a line without an end, and is shorter than the readings above: it may be cut off, and is kept", "export the record again, or take the line out"}
 	frozen      = saying{"is read {1} times in a row, up to {2}: the sensor may have stopped", "check the logger"}
 	doubtful    = saying{"jumps away from {1} before and {2} after it, and is kept", "look at the record there: a loose plug or a moved probe?"}
