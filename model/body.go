@@ -492,6 +492,7 @@ func (h *History) look() *Scan {
 			sc.C[i][k] = clamp(c, r)
 		}
 	}
+	h.settled(sc)
 	return sc
 }
 
@@ -623,6 +624,7 @@ func (h *History) SampleAt(times []float64) Samples {
 	s.ColdestAt, s.HottestAt = places[:n:n], places[n:]
 	if f, ok := h.field.(*tensor); ok && f.single() && f.axes[0].kind != lumped {
 		f.sampleLine(h, &s)
+		h.settledSamples(&s)
 		return s
 	}
 	for i, t := range s.TimesS {
@@ -633,6 +635,7 @@ func (h *History) SampleAt(times []float64) Samples {
 		s.Hottest[i], s.HottestAt[i] = h.within(t, high.c), h.body.place(high.x)
 		s.Mean[i] = h.within(t, shot.mean())
 	}
+	h.settledSamples(&s)
 	return s
 }
 

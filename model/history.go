@@ -71,6 +71,9 @@ type History struct {
 	hull   [][2]float64 // by span: the range of the food
 	knots  [][]float64  // by span: instants in it at which the slope of a medium changes
 	settle float64      // s after a change from which ErrorK holds
+
+	settling []settles // beginnings of steps at which swings are kept within bounds
+	entryOf  func(Place) entry
 }
 
 // EndS is the end of the chain, in s.

@@ -823,16 +823,33 @@ func (s *solver) hulls(h *History) {
 func (s *solver) finish(h *History) {
 	s.hulls(h)
 	f := s.main
+	h.entryOf = func(p Place) entry { return s.entryOf(h.body, p) }
 	h.Course = func(p Place, times, out []float64) {
-		f.course(h.body.coord(p), times, out)
+		x := h.body.coord(p)
+		f.course(x, times, out)
+		var e *settles
+		var by []float64
 		for i, t := range times {
 			out[i] = h.within(t, out[i])
+			now := settlingAt(h.settling, t)
+			if now == nil {
+				continue
+			}
+			sent := now.sentK(h.entryOf(p), now.part(t))
+			if math.IsInf(sent, 1) {
+				continue
+			}
+			if now != e {
+				e, by = now, make([]float64, len(now.before()))
+				f.course(x, e.before(), by)
+			}
+			out[i] = e.keep(out[i], t, by, sent)
 		}
 	}
 	h.At = func(p Place, t float64) float64 {
 		times, out := [1]float64{t}, [1]float64{}
-		f.course(h.body.coord(p), times[:], out[:])
-		return h.within(t, out[0])
+		h.Course(p, times[:], out[:])
+		return out[0]
 	}
 	spans := h.Spans
 	h.MediumC = func(t float64) float64 {
@@ -851,6 +868,7 @@ func (s *solver) finish(h *History) {
 	for _, cs := range s.chain {
 		h.knots = append(h.knots, cs.knots)
 	}
+	h.settling = s.settling(h)
 	h.Method = s.method()
 }
 
