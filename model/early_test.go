@@ -60,6 +60,35 @@ func TestNoSwingAfterAChange(t *testing.T) {
 	}
 }
 
+// Foods whose properties change are marched, and swing no more; what radiates reaches beyond the media, and what can have come in with it.
+func TestNoSwingOfMarches(t *testing.T) {
+	food := &Material{Name: "test food", Source: "input of the test", Table: true, LowC: -60, HighC: 260, Props: func(c float64) Properties {
+		return Properties{0.40 + 0.001*c, 1050, 3300 + 3*c}
+	}}
+	steps := []Step{ownStep(Cook, 9000, 30, 90), ownStep(Rest, 2700, 8, 21), ownStep(Cool, 5400, 500, 1)}
+	h, err := Solve(Product{Name: "p", Shape: ShortCylinder, Size: Size{DiameterM: 0.13, LengthM: 0.2}, Food: food, StartC: 5}, steps, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	chill, centre := h.Spans[2].StartS, Place{}
+	before := h.At(centre, chill)
+	slope := (before - h.At(centre, chill-60)) / 60
+	for _, tau := range []float64{1, 5, 20, 60} {
+		if got, want := h.At(centre, chill+tau), before+slope*tau; math.Abs(got-want) > 0.02 {
+			t.Errorf("%.0f s after the change: %.4f °C at the centre, %.4f if it goes on", tau, got, want)
+		}
+	}
+	hot, dry := 300.0, false
+	steps[0] = Step{Name: "grill", Stage: Cook, DurationS: 1200, Exposure: Exposure{Surface: StillAir, RadiatingC: &hot, Wet: &dry, Medium: Course{TimesS: []float64{0}, C: []float64{100}}}}
+	if h, err = Solve(Product{Name: "p", Shape: Slab, Size: Size{ThicknessM: 0.05}, Food: food, StartC: 5}, steps[:1], Options{}); err != nil {
+		t.Fatal(err)
+	}
+	// the surface settles between the air and what radiates, and was at more than 200 °C if it came near to it
+	if got := h.settling[0].rangeK; got < 200 {
+		t.Errorf("what comes in is bounded by %.0f K, and %.0f °C radiates on food of 5 °C in air of 100 °C", got, hot)
+	}
+}
+
 // What is kept is kept to the right side: against many more polynomials, whose own swing is over a hundred times sooner, a temperature is never
 // farther off than the polynomials alone leave it, but for two thousandths of a kelvin, at any place and instant, with media that change as well.
 func TestKeptIsNearerToTheTruth(t *testing.T) {

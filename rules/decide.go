@@ -40,6 +40,9 @@ type outcome struct {
 // neverBad is added to how unfavourable a place is that never came to the level, so that it ranks behind any time taken.
 const neverBad = 1e6
 
+// kept tells whether nothing is amiss: the limit is met, or does not apply.
+func (o outcome) kept() bool { return o.verdict == Met || o.verdict == NotApplicable }
+
 // none is an outcome without numbers.
 func none(v Verdict, word string) outcome {
 	nan := math.NaN()
@@ -438,18 +441,14 @@ func (v *view) maybe(q question, spot int, least float64) bool {
 	if math.IsInf(least, 1) {
 		return true
 	}
-	verdict := q.measure(p, tilt{ownK: least + slackK, rank: true}).verdict
-	return verdict != Met && verdict != NotApplicable
+	return !q.measure(p, tilt{ownK: least + slackK, rank: true}).kept()
 }
 
 // roomBy finds by bisection how far the limit's own temperature may move before a place no longer meets it, K. It answers
 // +Inf where no change within reach matters or where the place meets it at least (then it cannot be the smallest).
 func roomBy(m measure, p path, least float64) float64 {
 	const reach = 300.0
-	met := func(k float64) bool {
-		v := m(p, tilt{ownK: k, rank: true}).verdict
-		return v == Met || v == NotApplicable
-	}
+	met := func(k float64) bool { return m(p, tilt{ownK: k, rank: true}).kept() }
 	hi := math.Min(least, reach)
 	if met(hi) {
 		return math.Inf(1)

@@ -102,10 +102,7 @@ func (v *view) jointsAround(s scope, q question, cs []candidate) []model.Axes {
 
 // parted lists the pairs of neighbours of unlike traits, the worst by their blended courses first.
 func (v *view) parted(s scope, q question, cs []candidate, t tilt, eachWay int) []edge {
-	times, rows := v.c.times, v.c.rows
-	if v.c.roughly(); v.c.rough != nil && len(s.spots) >= manySpots {
-		times, rows = v.c.roughT, v.c.rough
-	}
+	times, rows := v.c.ranking(len(s.spots))
 	bar := outcome{verdict: NotApplicable, bad: math.Inf(-1)}
 	for _, c := range cs {
 		if o := q.measure(c.path, t); worse(o, bar) {

@@ -90,10 +90,7 @@ func (v *view) risky(s scope, q question, t tilt) []model.Axes {
 	if q.risks == nil || v.h.Recorded || s.surfaceOnly || len(s.spots) == 0 || !v.gridded() {
 		return nil
 	}
-	times, rows := v.c.times, v.c.rows
-	if v.c.roughly(); v.c.rough != nil && len(s.spots) >= manySpots {
-		times, rows = v.c.roughT, v.c.rough
-	}
+	times, rows := v.c.ranking(len(s.spots))
 	var found []model.Axes
 	for _, of := range q.risks(t) {
 		nearest, by := make([]int, of.leaps), make([]float64, of.leaps)

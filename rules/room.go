@@ -15,16 +15,19 @@ const (
 	closerRoomK = 0.02  // how much smaller a room found so has to be to be followed again
 )
 
-// leastRoom is the margin in K of what is met: no more than that of the candidates and the spots, at a place (nil: the one that decides).
+// leastRoom is the margin in K of what is met: no more than that of the candidates and the spots, at a place.
 func (v *view) leastRoom(s scope, q question, cs []candidate, least float64, where *model.Place) (float64, *model.Place) {
-	if v.h.Recorded || len(s.spots) == 0 || v.brief || !(least > roomK) || math.IsInf(least, 1) {
+	if v.h.Recorded || s.medium != nil || v.brief || where == nil || !(least > roomK) {
 		return least, where
 	}
-	if q.room == nil {
-		least = v.exactRoom(q, cs, where, least)
+	if q.room == nil { // a path of straight lines cuts turns off
+		least = math.Min(least, roomBy(q.measure, v.path(*where), least-roomK/2))
 	}
-	if least < closeRoomK && !s.surfaceOnly {
-		least, where = v.closerRoom(q, cs, least, where)
+	if s.one != nil {
+		return least, where
+	}
+	if least < closeRoomK && !s.surfaceOnly && v.gridded() {
+		least, where = v.closerRoom(q, least, where)
 	}
 	if q.room != nil || q.traits == nil {
 		return least, where
@@ -33,14 +36,14 @@ func (v *view) leastRoom(s scope, q question, cs []candidate, least float64, whe
 		t := tilt{ownK: k, rank: true}
 		if v.single() {
 			for i := range cs {
-				if verdict := q.measure(cs[i].path, t).verdict; verdict != Met && verdict != NotApplicable {
+				if !q.measure(cs[i].path, t).kept() {
 					return &cs[i].place
 				}
 			}
 		}
 		for _, x := range append(v.joints(s, q, cs, t, 1).places, v.risky(s, q, t)...) {
 			p := v.h.PlaceAt(x)
-			if verdict := q.measure(v.path(p), t).verdict; verdict != Met && verdict != NotApplicable {
+			if !q.measure(v.path(p), t).kept() {
 				return &p
 			}
 		}
@@ -71,46 +74,15 @@ func (v *view) leastRoom(s scope, q question, cs []candidate, least float64, whe
 	return lo, at
 }
 
-// exactRoom is the room of the place that decides by its exact course: a path of straight lines cuts its turns off.
-func (v *view) exactRoom(q question, cs []candidate, where *model.Place, least float64) float64 {
-	p := cs[0].path
-	if where != nil {
-		p = v.path(*where)
-	}
-	met := func(k float64) bool {
-		verdict := q.measure(p, tilt{ownK: k, rank: true}).verdict
-		return verdict == Met || verdict == NotApplicable
-	}
-	lo, hi := 0.0, least-roomK/2
-	if met(hi) {
-		return least
-	}
-	for hi-lo > roomK/2 {
-		if m := (lo + hi) / 2; met(m) {
-			lo = m
-		} else {
-			hi = m
-		}
-	}
-	return lo
-}
-
 // closerRoom looks for a place of less room by steps along the axes.
-func (v *view) closerRoom(q question, cs []candidate, least float64, where *model.Place) (float64, *model.Place) {
-	x := cs[0].place
-	if where != nil {
-		x = *where
-	}
-	if !v.gridded() {
-		return least, where
-	}
+func (v *view) closerRoom(q question, least float64, where *model.Place) (float64, *model.Place) {
 	for range 4 {
 		t := tilt{ownK: least - roomK/2, rank: true}
 		score := q.measure
 		if q.room != nil {
 			score = func(p path, _ tilt) outcome { return outcome{verdict: Met, bad: -q.room(p)} }
 		}
-		y := v.stepwise(score, v.h.Axes(x), t)
+		y := v.stepwise(score, v.h.Axes(*where), t)
 		p := v.h.PlaceAt(y)
 		room := q.room
 		if room == nil {
@@ -121,7 +93,7 @@ func (v *view) closerRoom(q question, cs []candidate, least float64, where *mode
 			return least, where
 		}
 		before := least
-		least, where, x = r, &p, p
+		least, where = r, &p
 		if before-least < closerRoomK {
 			break
 		}

@@ -17,9 +17,7 @@ func (v *view) untilMoves(o *outcome, ivs []interval) (tail string) {
 			if sp.Step == nil || sp.Step.UntilC == nil || sp.Reached == nil || !*sp.Reached || sp.EndS <= iv.a+sameS || sp.EndS > iv.b+sameS {
 				continue
 			}
-			if by := v.errK / v.pace(n); most+by > most {
-				most, step = most+by, sp.Step.Name
-			}
+			most, step = most+v.errK/v.pace(n), sp.Step.Name
 		}
 	}
 	if step == "" || math.Abs(o.margin) > most {

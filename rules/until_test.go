@@ -92,3 +92,38 @@ func TestOnceKeepsItsMargin(t *testing.T) {
 		t.Errorf("%d margins", margins)
 	}
 }
+
+// The margin of one named place is that of its exact course: where it is up the limit turns, within a few thousandths of a kelvin, also where a trough
+// between two instants that were looked at decides.
+func TestMarginOfOnePlace(t *testing.T) {
+	draw := rand.New(rand.NewPCG(2, 8))
+	margins := 0
+	for n := range 30 {
+		h := swung(t, draw, []*model.Shape{model.Slab, model.Sphere}[n%2], 3)
+		for _, p := range h.Points {
+			for _, l := range pivot(draw, h, p.Place) {
+				if l.Kind != Hold || l.FromC == nil || l.Counting != Continuous {
+					continue
+				}
+				l.FromC, l.TimeS, l.Where.Name = c(*l.FromC-0.7), min_(10), p.Name
+				l.TimeS = min_(0.9 * *one(t, l, h).Value)
+				f := one(t, l, h)
+				if f.Verdict != Met || f.MarginK == nil || *f.MarginK > 3 {
+					continue
+				}
+				margins++
+				for _, by := range []float64{-0.006, 0.006} {
+					moved := l
+					moved.FromC = c(*l.FromC + *f.MarginK + by)
+					k := *one(t, moved, h).MarginS
+					if kept := k >= 0; kept != (by < 0) {
+						t.Errorf("%d, %s at %s: margin %.4f K, and %.0f s of room at %+.3f K beyond it", n, h.Product.Shape.Name, p.Name, *f.MarginK, k, by)
+					}
+				}
+			}
+		}
+	}
+	if margins < 10 {
+		t.Errorf("%d margins", margins)
+	}
+}

@@ -66,6 +66,14 @@ func (c *courses) roughly() {
 	}
 }
 
+// ranking are the courses by which so many spots are ranked, rough ones of many.
+func (c *courses) ranking(spots int) (times []float64, rows [][]float64) {
+	if c.roughly(); c.rough != nil && spots >= manySpots {
+		return c.roughT, c.rough
+	}
+	return c.times, c.rows
+}
+
 // bounds are the instants that every path must have: the ends of the steps, and where a bound begins.
 func (c *courses) bounds() []float64 {
 	bounds := []float64{0, c.end}
