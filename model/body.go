@@ -473,6 +473,12 @@ func (h *History) look() *Scan {
 		}
 		sc.TimesS = append(sc.TimesS, times...)
 	}
+	h.lookAt(sc)
+	return sc
+}
+
+// lookAt fills the spots and temperatures of a scan, by its instants.
+func (h *History) lookAt(sc *Scan) {
 	b := h.body
 	n, m := b.nodes.count(), len(sc.TimesS)
 	all := make([]float64, n*m)
@@ -492,8 +498,9 @@ func (h *History) look() *Scan {
 			sc.C[i][k] = clamp(c, r)
 		}
 	}
-	h.settled(sc)
-	return sc
+	if h.settling != nil {
+		h.settleScan(sc)
+	}
 }
 
 // Least looks in the food, from a spot of the scan on, for the place with the smallest score, staying on the surface if asked.

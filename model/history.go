@@ -72,8 +72,8 @@ type History struct {
 	knots  [][]float64  // by span: instants in it at which the slope of a medium changes
 	settle float64      // s after a change from which ErrorK holds
 
-	settling []settles // beginnings of steps at which swings are kept within bounds
-	entryOf  func(Place) entry
+	settling   []settles // beginnings of steps at which swings are kept within bounds
+	settleScan func(*Scan)
 }
 
 // EndS is the end of the chain, in s.

@@ -823,27 +823,14 @@ func (s *solver) hulls(h *History) {
 func (s *solver) finish(h *History) {
 	s.hulls(h)
 	f := s.main
-	h.entryOf = func(p Place) entry { return s.entryOf(h.body, p) }
+	h.settleScan = func(sc *Scan) { s.settled(h, sc) }
 	h.Course = func(p Place, times, out []float64) {
 		x := h.body.coord(p)
 		f.course(x, times, out)
-		var e *settles
-		var by []float64
+		k := early{s: s}
+		before := func(times, out []float64) { f.course(x, times, out) }
 		for i, t := range times {
-			out[i] = h.within(t, out[i])
-			now := settlingAt(h.settling, t)
-			if now == nil {
-				continue
-			}
-			sent := now.sentK(h.entryOf(p), now.part(t))
-			if math.IsInf(sent, 1) {
-				continue
-			}
-			if now != e {
-				e, by = now, make([]float64, len(now.before()))
-				f.course(x, e.before(), by)
-			}
-			out[i] = e.keep(out[i], t, by, sent)
+			out[i] = k.keep(h, p, h.within(t, out[i]), t, before)
 		}
 	}
 	h.At = func(p Place, t float64) float64 {
