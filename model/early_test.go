@@ -79,7 +79,8 @@ func TestNoSwingOfMarches(t *testing.T) {
 		}
 	}
 	hot, dry := 300.0, false
-	steps[0] = Step{Name: "grill", Stage: Cook, DurationS: 1200, Exposure: Exposure{Surface: StillAir, RadiatingC: &hot, Wet: &dry, Medium: Course{TimesS: []float64{0}, C: []float64{100}}}}
+	steps[0] = Step{Name: "grill", Stage: Cook, DurationS: 1200, Exposure: Exposure{Surface: StillAir, RadiatingC: &hot, Wet: &dry,
+		Medium: Course{TimesS: []float64{0}, C: []float64{100}}}}
 	if h, err = Solve(Product{Name: "p", Shape: Slab, Size: Size{ThicknessM: 0.05}, Food: food, StartC: 5}, steps[:1], Options{}); err != nil {
 		t.Fatal(err)
 	}
@@ -155,7 +156,8 @@ func TestKeptIsNearerToTheTruth(t *testing.T) {
 				break
 			}
 			for range 40 {
-				at, place := sp.StartS+min(u(2*sooner, h.settle), sp.EndS-sp.StartS), Place{UpM: u(-1, 1) * half[0], AcrossM: u(0, 1) * half[1], AlongM: u(0, 1) * half[2]}
+				at := sp.StartS + min(u(2*sooner, h.settle), sp.EndS-sp.StartS)
+				place := Place{UpM: u(-1, 1) * half[0], AcrossM: u(0, 1) * half[1], AlongM: u(0, 1) * half[2]}
 				var alone [1]float64
 				h.field.course(h.body.coord(place), []float64{at}, alone[:])
 				c, truth := h.At(place, at), fine.At(place, at)
@@ -173,5 +175,87 @@ func TestKeptIsNearerToTheTruth(t *testing.T) {
 	t.Logf("kept nearer by up to %.3f K, %d times; farther by up to %.4f K; off by up to %.4f K", kept, moved, worst, left)
 	if moved < 50 {
 		t.Errorf("%d temperatures were kept: the cases do not show it", moved)
+	}
+}
+
+// What the faces can have driven in holds between its ends until the faces know of each other, long after the swings: against the polynomials once they
+// are exact, at the centre as well, where both faces of a slab and all of a sphere come together, and where the conductivity doubles with the temperature.
+func TestWhatComesInIsBounded(t *testing.T) {
+	q := Properties{0.45, 1050, 3500}
+	constant := &Material{Name: "test food", Source: "input of the test", Props: func(float64) Properties { return q }}
+	rising := &Material{Name: "test food", Source: "input of the test", Table: true, LowC: -20, HighC: 140, Props: func(c float64) Properties {
+		return Properties{q.KWmK * (1 + c/100), q.RhoKgM3, q.CJkgK * (1 + c/100)}
+	}}
+	held := Exposure{Surface: Held, Medium: Course{TimesS: []float64{0}, C: []float64{95}}}
+	for _, food := range []*Material{constant, rising} {
+		for _, shape := range []*Shape{Slab, Cylinder, Sphere, ShortCylinder, Bar} {
+			for _, e := range []Exposure{held, filmTo(600, 95), filmTo(30, 95)} {
+				size := Size{ThicknessM: 0.06, DiameterM: 0.06, LengthM: 0.06, WidthM: 0.06}
+				p := Product{Name: "p", Shape: shape, Size: size, Food: food, StartC: 5}
+				steps := []Step{{Name: "cook", Stage: Cook, DurationS: 3600, Exposure: e}}
+				h, err := Solve(p, steps, Options{})
+				if err != nil {
+					t.Fatal(err)
+				}
+				s := &solver{product: &p, steps: steps, options: Options{ConductivityFactor: 1}}
+				s.layOut()
+				early := h.settling[0]
+				least, most := early.alpha[0], early.alpha[1]
+				for _, x := range []float64{0, 0.1, 0.4, 0.8, 0.95, 1} {
+					for _, fo := range []float64{0.025, 0.039} {
+						at := fo * 0.03 * 0.03 / most
+						if at < h.settle {
+							continue
+						}
+						place := Place{UpM: 0.03 * x}
+						c := h.At(place, at)
+						var answers []answer
+						for i := range early.drives {
+							d := &early.drives[i]
+							answers = append(answers, early.answered(s, d, s.under(h.body, d, place), at))
+						}
+						lo, hi := early.came(answers)
+						if c < 5+lo-2*h.ErrorK || c > 5+hi+2*h.ErrorK {
+							t.Errorf("%s, table %v, film %v, %.2f of the way out, Fourier number %g: %.4f °C, and %.4f to %.4f may have come in",
+								shape.Name, food.Table, e.FilmW, x, fo, c, lo, hi)
+						}
+						if shape == Sphere && least == most && hi-lo > 0.01 {
+							t.Errorf("sphere: %.4f to %.4f", lo, hi)
+						}
+					}
+				}
+			}
+		}
+	}
+}
+
+// A corner of the old surroundings just before a change makes the polynomials swing before it, and with them the course that goes on.
+func TestCornerJustBeforeAChange(t *testing.T) {
+	q := Properties{0.5, 1050, 2750}
+	food := &Material{Name: "test food", Source: "input of the test", Props: func(float64) Properties { return q }}
+	held := func(times []float64, c ...float64) Exposure {
+		return Exposure{Surface: Held, Medium: Course{TimesS: times, C: c}}
+	}
+	steps := []Step{{Name: "cook", Stage: Cook, DurationS: 1500, Exposure: held([]float64{0, 750, 1496, 1500}, 90, 60, 75, 40)},
+		{Name: "reheat", Stage: Reheat, DurationS: 1500, Exposure: held([]float64{0}, 95)}}
+	p := Product{Name: "p", Shape: Sphere, Size: Size{DiameterM: 0.08}, Food: food, StartC: 10}
+	h, err := Solve(p, steps, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	fine, err := Solve(p, steps, Options{ErrorFromS: 0.5})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, x := range []float64{0, 0.004, 0.008, 0.012, 0.016, 0.02, 0.024, 0.028, 0.032, 0.036, 0.039} {
+		for tau := 1.0; tau < h.settle; tau++ {
+			var alone [1]float64
+			at, place := 1500+tau, Place{UpM: x}
+			h.field.course(h.body.coord(place), []float64{at}, alone[:])
+			truth := fine.At(place, at)
+			if is, was := math.Abs(h.At(place, at)-truth), math.Abs(h.within(at, alone[0])-truth); is > was+0.002 {
+				t.Errorf("%.1f mm, %.0f s: %.4f K off, %.4f by the polynomials alone", 1000*x, tau, is, was)
+			}
+		}
 	}
 }
