@@ -21,14 +21,8 @@ func (v *view) closer(s scope, q question, cs []candidate) []model.Axes {
 	if v.h.Recorded || s.surfaceOnly || len(s.spots) == 0 || math.IsNaN(q.need) {
 		return nil
 	}
-	best := 0
-	for i := range cs {
-		if worse(cs[i].nominal, cs[best].nominal) {
-			best = i
-		}
-	}
-	o := cs[best].nominal
-	if o.verdict == NotMet || o.verdict == NotApplicable || !(math.Abs(o.value-q.need) <= closerShare*math.Abs(q.need)) {
+	best := worstOfAll(cs)
+	if o := cs[best].nominal; o.verdict == NotMet || o.verdict == NotApplicable || !(math.Abs(o.value-q.need) <= closerShare*math.Abs(q.need)) {
 		return nil
 	}
 	if !v.gridded() {

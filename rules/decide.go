@@ -96,12 +96,7 @@ func (v *view) judgePlaces(q question) Finding {
 		return v.blank(CannotTell, s.why)
 	}
 	cs := v.candidates(s, q)
-	best := 0
-	for i := range cs {
-		if worse(cs[i].nominal, cs[best].nominal) {
-			best = i
-		}
-	}
+	best := worstOfAll(cs)
 	edge := cs[best]
 	if edge.edge != nil && edge.nominal.verdict != NotApplicable {
 		if c, same := v.probed(edge, q); same {
@@ -157,6 +152,17 @@ func (v *view) judgePlaces(q question) Finding {
 	}
 	f.Why = v.sentence(&f, o, v.weigh(&f, o, q, s, cs))
 	return f
+}
+
+// worstOfAll is the index of the least favourable candidate.
+func worstOfAll(cs []candidate) int {
+	best := 0
+	for i := range cs {
+		if worse(cs[i].nominal, cs[best].nominal) {
+			best = i
+		}
+	}
+	return best
 }
 
 // unfavourable is the tilt of the unfavourable end of the error band.
@@ -308,6 +314,9 @@ func (v *view) candidates(s scope, q question) []candidate {
 	}
 	for _, x := range v.closer(s, q, cs) {
 		put(v.h.PlaceAt(x), false)
+	}
+	for _, x := range v.settled(s, q, cs) {
+		put(v.h.PlaceAt(x), s.surfaceOnly)
 	}
 	return cs
 }
