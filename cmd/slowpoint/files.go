@@ -3,20 +3,44 @@ package main
 import (
 	"errors"
 	"fmt"
+	"io/fs"
 	"os"
 	"path/filepath"
 	"strings"
+	"syscall"
 	"unicode"
 )
 
 // unwritable is a file of the user's that could not be written.
 type unwritable struct {
-	path string
-	why  error
+	path   string
+	why    error
+	folder bool // it is that of the results
 }
 
 func (u *unwritable) Error() string {
-	return fmt.Sprintf("%s cannot be written (%v): choose another place, or make room", u.path, u.why)
+	other := "choose another place"
+	if u.folder {
+		other = "choose another folder with --out"
+	}
+	return fmt.Sprintf("%s cannot be written (%v): %s%s", u.path, u.why, other, u.mend())
+}
+
+// mend says what else can be done, by why it could not be written; "" for nothing.
+func (u *unwritable) mend() string {
+	switch {
+	case errors.Is(u.why, fs.ErrPermission):
+		return ", or give yourself the right to write there"
+	case errors.Is(u.why, syscall.EROFS):
+		return ": nothing can be written to that disk"
+	case errors.Is(u.why, syscall.ENOTDIR):
+		return ", or move the file that stands where a folder has to be"
+	case errors.Is(u.why, fs.ErrNotExist):
+		return ": the folder that it lies in is not there, and cannot be made"
+	case errors.Is(u.why, syscall.ENOSPC):
+		return ", or make room on that disk"
+	}
+	return ", or make room"
 }
 
 func (u *unwritable) Unwrap() error { return u.why }
@@ -27,7 +51,7 @@ func cannotWrite(path string, err error) error {
 	if errors.As(err, &told) {
 		return told
 	}
-	return &unwritable{path, cause(err)}
+	return &unwritable{path: path, why: cause(err)}
 }
 
 // cause is an error of the system without the name of the file that it met.
@@ -46,11 +70,11 @@ func cause(err error) error {
 // makeFolder makes the folder of the results and tries whether it takes files.
 func (s *shelf) makeFolder(path string) error {
 	if err := os.MkdirAll(path, 0o755); err != nil {
-		return cannotWrite(path, err)
+		return &unwritable{path, cause(err), true}
 	}
 	f, err := s.begin(filepath.Join(path, "a file"))
 	if err != nil {
-		return err
+		return &unwritable{path, errors.Unwrap(err), true} // without the name of a file that nobody asked for
 	}
 	s.drop(f)
 	return nil

@@ -542,6 +542,44 @@ func TestWhatCannotBeWritten(t *testing.T) {
 	f.drop()
 }
 
+// TestWhereNothingCanBeWritten: what is told names the folder of the results, why nothing can be written there and what to do, and nothing is left.
+func TestWhereNothingCanBeWritten(t *testing.T) {
+	dir := t.TempDir()
+	file := filepath.Join(dir, "notes")
+	if err := os.WriteFile(file, nil, 0o644); err != nil {
+		t.Fatal(err)
+	}
+	var s shelf
+	in := filepath.Join(file, "results")
+	if err := s.makeFolder(in); err == nil || err.Error() != in+" cannot be written (not a directory): choose another folder with --out, or move the file that stands where a folder has to be" {
+		t.Errorf("a file instead of a folder: %v", err)
+	}
+	for _, x := range []struct {
+		why  error
+		want string
+	}{
+		{syscall.EACCES, "D cannot be written (permission denied): choose another folder with --out, or give yourself the right to write there"},
+		{syscall.EROFS, "D cannot be written (read-only file system): choose another folder with --out: nothing can be written to that disk"},
+		{syscall.ENOSPC, "D cannot be written (no space left on device): choose another folder with --out, or make room on that disk"},
+		{syscall.ENOENT, "D cannot be written (no such file or directory): choose another folder with --out: the folder that it lies in is not there, and cannot be made"},
+	} {
+		if got := (&unwritable{"D", x.why, true}).Error(); got != x.want {
+			t.Errorf("%s", got)
+		}
+	}
+	locked := filepath.Join(dir, "locked")
+	if err := os.Mkdir(locked, 0o555); err != nil {
+		t.Fatal(err)
+	}
+	if f, err := os.CreateTemp(locked, "x"); err == nil { // whoever may do anything
+		f.Close()
+		t.Skip("nothing is forbidden here")
+	}
+	if err := s.makeFolder(locked); err == nil || !strings.HasPrefix(err.Error(), locked+" cannot be written (permission denied)") {
+		t.Errorf("a folder that is locked: %v", err)
+	}
+}
+
 // Whoever runs a plan again without PDFs, or a part of it, is told which files in the folder are of an earlier run.
 func TestFilesOfAnEarlierRunAreTold(t *testing.T) {
 	out := filepath.Join(t.TempDir(), "results")
