@@ -233,25 +233,48 @@ func (s *search) judge(run *prediction, due []int) []rules.Finding {
 	return found
 }
 
-// refusal words why a corner cannot be calculated, at the row of the first spread that it moves.
+// refusal words why a corner cannot be calculated, at the rows of the spreads that make it so.
 func (s *search) refusal(at []float64, err error) error {
-	c := make(corner, len(at))
-	for i, v := range at {
-		switch {
-		case v < 0:
-			c[i] = -1
-		case v > 0:
-			c[i] = 1
-		}
-	}
 	var es cell.Errors
-	i := slices.IndexFunc(c, func(v float64) bool { return v != 0 })
-	if !errors.As(err, &es) || i < 0 || len(es) == 0 {
+	if !errors.As(err, &es) || len(es) == 0 || corner(at).nominal() {
 		return err
 	}
-	return cell.Errors{{At: s.p.Spreads[i].At, Level: cell.Fault, Field: "Quantity", Typed: s.p.Spreads[i].Of.Name,
-		Msg:  fmt.Sprintf("varies together with others to what cannot be calculated (%s): %s", strings.Join(s.words(c), ", "), strings.TrimSpace(es[0].Typed+" "+es[0].Msg)),
-		Hint: "let them vary less, or change what it is about"}}
+	c, why := s.blame(at, es[0])
+	var rows []string
+	first := -1
+	for i, v := range c {
+		switch {
+		case v == 0:
+		case first < 0:
+			first = i
+		default:
+			rows = append(rows, s.p.Spreads[i].At.String())
+		}
+	}
+	together := ""
+	if len(rows) > 0 {
+		together = "together with " + strings.Join(rows, ", ") + " "
+	}
+	return cell.Errors{{At: s.p.Spreads[first].At, Level: cell.Fault, Field: "Quantity", Typed: s.p.Spreads[first].Of.Name,
+		Msg:  fmt.Sprintf("varies %sto what cannot be calculated (%s): %s", together, strings.Join(s.words(c), ", "), strings.TrimSpace(why.Typed+" "+why.Msg)),
+		Hint: "let it vary less, or change what it is about"}}
+}
+
+// blame puts back to its typed value whatever a corner cannot be calculated without either, and tells why it still cannot be.
+func (s *search) blame(at []float64, why cell.Error) (corner, cell.Error) {
+	c := corner(at)
+	for i := range c {
+		less := c.with(i, 0)
+		if c[i] == 0 || less.nominal() {
+			continue
+		}
+		q := s.p.Varied(less)
+		var es cell.Errors
+		if _, err := s.r.predict(&q, s.options); errors.As(err, &es) && len(es) > 0 {
+			c, why = less, es[0]
+		}
+	}
+	return c, why
 }
 
 // corners finds the least favourable corner of each limit: directions by the effect of each end alone, or from corners that were worst beside
