@@ -473,6 +473,9 @@ func (h *History) look() *Scan {
 		}
 		sc.TimesS = append(sc.TimesS, times...)
 	}
+	if f, ok := h.field.(remembers); ok {
+		f.remember(h.remembered(sc.TimesS))
+	}
 	h.lookAt(sc)
 	return sc
 }

@@ -367,10 +367,16 @@ func (of *settlingOf) slope(d *drive, node int, t float64) float64 {
 	return (3*c[0] - 4*c[1] + c[2]) / (2 * math.Abs(step))
 }
 
+// farOff is the depth, over twice the root of time times α, to which nothing has come yet: less than 1e-17 of it.
+const farOff = 6.2
+
 // behindFilm is the answer of a half space behind a film to surroundings that rise by 1, at a depth in m, with the film by conductivity, 1/m, and the
 // root of time times α, m; divided by that film, in m. The film may be 0 or a little less.
 func behindFilm(depthM, film, root float64) float64 {
 	z, f := depthM/(2*root), film*root
+	if z > farOff {
+		return 0
+	}
 	if math.Abs(f) < 1e-3 { // to the first order in f, by repeated integrals of erfc
 		once := math.Exp(-z*z)/math.Sqrt(math.Pi) - z*math.Erfc(z)
 		return root * (2*once - f*(math.Erfc(z)-2*z*once))

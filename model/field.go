@@ -67,6 +67,7 @@ type tensor struct {
 	steps []*tensorStep
 	segs  []tensorSeg
 	now   tensorShot
+	fades fades
 	mem   *slab // for what lives as long as the field
 	tmp   *slab // for what is needed within a call
 }
@@ -505,11 +506,15 @@ func modeValues(a *axis, b []float64, x float64, out []float64) {
 }
 
 func (f *tensor) course(x coord, times, out []float64) {
+	if len(times) == 0 {
+		return
+	}
 	var v, e [3][maxDegrees]float64
 	var lin [2][]float64 // by medium: s and w at the place
 	var in *tensorStep
 	n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
 	var buf [2 * 8]float64
+	kept := f.fades.first(times[0])
 	for ti, t := range times {
 		sg := &f.segs[f.segAt(t)]
 		st := sg.step
@@ -544,24 +549,41 @@ func (f *tensor) course(x coord, times, out []float64) {
 		for g := range st.groups {
 			sum += lin[0][g]*(sg.level[g]+sg.slope[g]*tau) - lin[1][g]*sg.slope[g]
 		}
-		var keep [3]int
-		for a := range keep {
-			keep[a] = decays(st.ax[a].rate, tau, e[a][:f.axes[a].n])
-			for i := 0; i < keep[a]; i++ {
-				e[a][i] *= v[a][i]
+		var left [3][]float64
+		var ok bool
+		if kept, ok = f.fades.find(kept, t); ok {
+			left = f.fades.at(kept, &f.axes, &st.ax, tau)
+		} else {
+			for a := range left {
+				left[a] = e[a][:decays(st.ax[a].rate, tau, e[a][:f.axes[a].n])]
 			}
 		}
 		extra := 1.0
 		if st.extra > 0 {
 			extra = math.Exp(-st.extra * tau)
 		}
-		for i := 0; i < keep[0]; i++ {
+		if n1*n2 == 1 {
+			y, z := left[1][0]*v[1][0], left[2][0]*v[2][0]
+			c := sg.c[:len(left[0])]
+			for i, x := range left[0] {
+				sum += c[i] * z * y * (x * v[0][i]) * extra
+			}
+			out[ti] = sum
+			continue
+		}
+		for a := range left {
+			for i, x := range left[a] {
+				e[a][i] = x * v[a][i]
+			}
+		}
+		z := e[2][:len(left[2])]
+		for i := range left[0] {
 			row := 0.0
-			for j := 0; j < keep[1]; j++ {
+			for j := range left[1] {
 				at := (i*n1 + j) * n2
-				c := sg.c[at : at+keep[2]]
+				c := sg.c[at : at+len(z)]
 				dot := 0.0
-				for k, z := range e[2][:keep[2]] {
+				for k, z := range z {
 					dot += c[k] * z
 				}
 				row += dot * e[1][j]
@@ -571,6 +593,8 @@ func (f *tensor) course(x coord, times, out []float64) {
 		out[ti] = sum
 	}
 }
+
+func (f *tensor) remember(times []float64) { f.fades.start(times) }
 
 // tensorShot is a tensor at one instant.
 type tensorShot struct {
@@ -595,6 +619,16 @@ func (f *tensor) at(t float64) snapshot {
 	}
 	s.sg = &f.segs[f.segAt(t)]
 	s.tau = min(max(t-s.sg.t0, 0), s.sg.t1-s.sg.t0)
+	if f.single() && s.sg.step.extra == 0 {
+		if i, ok := f.fades.find(f.fades.first(t), t); ok {
+			left := f.fades.at(i, &f.axes, &s.sg.step.ax, s.tau)[0]
+			for i, c := range s.sg.c[:len(left)] {
+				s.amp[i] = left[i] * c
+			}
+			s.keep = [3]int{len(left), 1, 1}
+			return s
+		}
+	}
 	s.keep = f.decaying(s.sg, s.tau, s.amp)
 	return s
 }

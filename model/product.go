@@ -11,6 +11,7 @@ type product struct {
 	start float64
 	steps []*productStep
 	now   productShot
+	fades fades
 	mem   *slab // for what lives as long as the field
 	tmp   *slab // for what is needed within a call
 }
@@ -126,8 +127,12 @@ func (f *product) stepAt(t float64) *productStep {
 }
 
 func (f *product) course(x coord, times, out []float64) {
+	if len(times) == 0 {
+		return
+	}
 	var e, v [3][maxDegrees]float64
 	var in *productStep
+	kept := f.fades.first(times[0])
 	for ti, t := range times {
 		st := f.stepAt(t)
 		if st != in {
@@ -137,20 +142,27 @@ func (f *product) course(x coord, times, out []float64) {
 			}
 		}
 		tau := min(max(t-st.t0, 0), st.t1-st.t0)
-		var keep [3]int
-		for a := range f.axes {
-			keep[a] = decays(st.ax[a].rate, tau, e[a][:f.axes[a].n])
-			for i := 0; i < keep[a]; i++ {
-				e[a][i] *= v[a][i]
+		var left [3][]float64
+		var ok bool
+		if kept, ok = f.fades.find(kept, t); ok {
+			left = f.fades.at(kept, &f.axes, &st.ax, tau)
+		} else {
+			for a := range left {
+				left[a] = e[a][:decays(st.ax[a].rate, tau, e[a][:f.axes[a].n])]
+			}
+		}
+		for a := range left {
+			for i, x := range left[a] {
+				e[a][i] = x * v[a][i]
 			}
 		}
 		sum := st.mediumC
 		for i := range st.terms {
 			term := &st.terms[i]
 			w := term.weight
-			for a := range f.axes {
+			for a := range left {
 				dot := 0.0
-				for k, c := range term.x[a][:keep[a]] {
+				for k, c := range term.x[a][:len(left[a])] {
 					dot += c * e[a][k]
 				}
 				w *= dot
@@ -160,6 +172,8 @@ func (f *product) course(x coord, times, out []float64) {
 		out[ti] = sum
 	}
 }
+
+func (f *product) remember(times []float64) { f.fades.start(times) }
 
 // productShot is a product at one instant.
 type productShot struct {

@@ -13,8 +13,9 @@ import (
 
 // guide judges the values of a search at the unfavourable ends of what varies. To look for the ends of each limit anew at every value would
 // take some hundred runs a value, though they hardly change along a dial: so they are looked for at a few values, and the others are
-// judged at the ends that were worst there. A value that misses a limit at any of these is missed; one that meets them all is confirmed by
-// a search of its own, from the ends known on, before it ends a run of values that meet, and the one that is told by a search from nothing.
+// judged at the ends that were worst there. A value that misses a limit at any of these is missed. One that meets them all is confirmed by
+// a search of its own, from the ends known on, before it ends a run of values that meet. The one that is told is searched on from nothing as well, with
+// all combinations of ends that check tries; only there the first directions are of no account.
 type guide struct {
 	r      *runner
 	limits []*rules.Limit // those that apply; nil: nothing was looked for yet
@@ -22,31 +23,57 @@ type guide struct {
 	mu     sync.Mutex     // guards both
 }
 
-// confirm looks for the unfavourable ends at a value, from those known already on, and keeps them.
+// confirm looks for the unfavourable ends at a value, from those known already on, and keeps them. Where nothing is known it goes by the effect of
+// each end alone.
 func (g *guide) confirm(p *workbook.Product) ([]rules.Finding, error) {
-	_, hints := g.known()
-	return g.search(p, hints)
+	s, err := g.searching(p)
+	if err != nil {
+		return nil, err
+	}
+	s.brief = s.hints == nil
+	return g.search(s)
 }
 
-// afresh looks for them from nothing, as check does.
-func (g *guide) afresh(p *workbook.Product) ([]rules.Finding, error) { return g.search(p, nil) }
+// afresh looks for them from nothing too, as check does, unless those known lead to a limit that is missed.
+func (g *guide) afresh(p *workbook.Product) ([]rules.Finding, error) {
+	s, err := g.searching(p)
+	if err != nil {
+		return nil, err
+	}
+	if s.hints != nil {
+		if found, err := g.search(s); err != nil || !meetsEvery(found) {
+			return found, err
+		}
+		s.also, s.hints = s.hints, nil
+		for k, c := range s.worst {
+			s.also[k] = append(slices.Clip(s.also[k]), c)
+		}
+	}
+	return g.search(s)
+}
 
-// search looks for the unfavourable ends at a value and keeps them; hints are corners that were worst beside it, nil if nothing is known.
-func (g *guide) search(p *workbook.Product, hints [][]corner) ([]rules.Finding, error) {
+// searching starts a search at a value from the corners that are known, if any are.
+func (g *guide) searching(p *workbook.Product) (*search, error) {
 	run, err := g.r.predict(p, model.Options{})
 	if err != nil {
 		return nil, g.r.located(p, err)
 	}
 	s := g.r.searching(p, run.find(g.r.plan.Limits), model.Options{})
-	s.hints = hints
+	_, s.hints = g.known()
+	return s, nil
+}
+
+// search looks for the unfavourable ends at a value and keeps them.
+func (g *guide) search(s *search) ([]rules.Finding, error) {
 	worst, err := s.corners()
 	if err != nil {
-		return nil, g.r.located(p, err)
+		return nil, g.r.located(s.p, err)
 	}
 	findings := make([]rules.Finding, len(worst))
 	for k, c := range worst {
 		findings[k] = s.at(c)[k]
 	}
+	s.worst = worst
 	g.keep(s.limits, worst)
 	return rules.Conclude(findings, g.r.plan.Groups).Findings, nil
 }

@@ -13,7 +13,7 @@ import (
 
 // afresh judges every value by a search of its own, from nothing.
 func (r *runner) afresh() judges {
-	return judges{look: func(p *workbook.Product) ([]rules.Finding, error) { return (&guide{r: r}).confirm(p) }}
+	return judges{look: func(p *workbook.Product) ([]rules.Finding, error) { return (&guide{r: r}).afresh(p) }}
 }
 
 // A search that goes by the ends found at a few values gives the answer of one that looks for them afresh at every value:

@@ -90,7 +90,8 @@ type scan struct {
 	p       *workbook.Product
 	d       *dial
 	judges  judges
-	workers int // how many values are judged at once
+	workers int       // how many values are judged at once
+	now     *examined // the product as it is; nil: of no account
 	seen    map[int]*examined
 	spacing int // of the grid, in steps
 }
@@ -151,10 +152,11 @@ const mostRounds = 8
 // run looks along the range until what it found is confirmed, the answer from nothing.
 func (s *scan) run() {
 	for range mostRounds {
-		if s.look(); s.confirm() && s.answers() {
+		if s.look(); s.confirm() && s.answers() && s.present() {
 			return
 		}
 	}
+	s.present()
 	s.judges, s.workers = judges{look: s.judges.sure()}, 1 // one by one: what one value teaches the next ones know
 	s.seen = nil
 	s.look()
@@ -172,19 +174,20 @@ func (s *scan) begin() {
 	}
 }
 
-// answers judges the value that will be told from nothing, and tells whether it still meets; true if there is none.
-func (s *scan) answers() bool {
-	if s.judges.afresh == nil {
-		return true
-	}
-	told := 0
-	found := false
+// told is the step that will be told; ok is false if none meets.
+func (s *scan) told() (told int, ok bool) {
 	for _, k := range s.steps() {
-		if s.seen[k].meets && (s.d.most || !found) {
-			told, found = k, true
+		if s.seen[k].meets && (s.d.most || !ok) {
+			told, ok = k, true
 		}
 	}
-	if !found {
+	return told, ok
+}
+
+// answers judges the value that will be told from nothing, and tells whether it still meets; true if there is none.
+func (s *scan) answers() bool {
+	told, found := s.told()
+	if s.judges.afresh == nil || !found {
 		return true
 	}
 	e := s.try(s.d.value(told), s.judges.afresh)
@@ -193,19 +196,30 @@ func (s *scan) answers() bool {
 	return e.meets
 }
 
+// present confirms the product as it is, with all that was learned since, and tells whether it still meets; true if it did not.
+func (s *scan) present() bool {
+	if s.now == nil || s.judges.confirm == nil || !s.now.meets || s.now.confirmed {
+		return true
+	}
+	*s.now = *examine(s.p, s.judges.confirm)
+	s.now.confirmed = true
+	return s.now.meets
+}
+
 // confirm confirms the ends of each run of values that meet: what misses a limit where it was looked at misses it. It tells whether all of
-// them still meet.
+// them still meet. The one that will be told is left to answers.
 func (s *scan) confirm() bool {
 	if s.judges.confirm == nil {
 		return true
 	}
 	ks := s.steps()
 	sure := map[int]*examined{}
+	told, _ := s.told()
 	holds := true
 	for i, k := range ks {
 		now := s.seen[k]
 		within := i > 0 && s.seen[ks[i-1]].meets && i+1 < len(ks) && s.seen[ks[i+1]].meets
-		if now.confirmed || !now.meets || within {
+		if now.confirmed || !now.meets || within || k == told && s.judges.afresh != nil {
 			continue
 		}
 		sure[k] = s.try(s.d.value(k), s.judges.confirm)
@@ -333,6 +347,7 @@ func (s *scan) fixed() []*rules.Limit {
 func (r *runner) size(p *workbook.Product, d *dial, j judges, basis string, workers int) *report.Sizing {
 	s := &scan{p: p, d: d, judges: j, workers: workers}
 	now := examine(p, j.sure()) // first: what is found here guides the search
+	s.now = now
 	if now.err != nil {
 		s.begin()
 	}

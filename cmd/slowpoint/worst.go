@@ -66,6 +66,9 @@ type search struct {
 	options model.Options
 	limits  []*rules.Limit // those that apply, in the order of the plan
 	hints   [][]corner     // for each of them, corners that were worst beside this product; nil: nothing is known yet
+	also    [][]corner     // for each of them, corners that were tried already and may be worse than what is found from nothing
+	brief   bool           // neither combinations of ends that no single end leads to, nor places between the ends are tried
+	worst   []corner       // for each of them, what was found last
 	solved  map[string]*cornerFindings
 }
 
@@ -288,8 +291,8 @@ func (s *search) corners() ([]corner, error) {
 	if err != nil {
 		return nil, err
 	}
-	if err := s.climb(worst); err != nil {
-		return nil, err
+	if err := s.climb(worst); err != nil || s.brief {
+		return worst, err
 	}
 	return worst, s.between(worst)
 }
@@ -353,6 +356,9 @@ func (s *search) fromEnds() ([]corner, error) {
 	first = append(first, worst...) // what is worst for one limit may be for another
 	for k := range worst {
 		worst[k] = s.worstOf(k, worst[k], first)
+		if s.also != nil {
+			worst[k] = s.worstOf(k, worst[k], s.also[k])
+		}
 	}
 	return worst, nil
 }
@@ -360,6 +366,9 @@ func (s *search) fromEnds() ([]corner, error) {
 // combined adds the corners that no single end may lead to.
 func (s *search) combined(first []corner) []corner {
 	n := len(s.p.Spreads)
+	if s.brief {
+		return first
+	}
 	if n <= fullSpreads {
 		for k := 0; k < len(first); k++ { // grows while it is walked: each combination of ends
 			for i := range n {
