@@ -17,34 +17,43 @@ import (
 // a search of its own, from the ends known on, before it ends a run of values that meet. The one that is told is searched on from nothing as well, with
 // all combinations of ends that check tries; only there the first directions are of no account.
 type guide struct {
-	r      *runner
-	limits []*rules.Limit // those that apply; nil: nothing was looked for yet
-	worst  [][]corner     // for each of them, the corners that were worst somewhere
-	mu     sync.Mutex     // guards both
+	r       *runner
+	limits  []*rules.Limit // those that apply; nil: nothing was looked for yet
+	worst   [][]corner     // for each of them, the corners that were worst somewhere
+	marched bool           // the product has to be marched
+	at      map[lookedAt]*search
+	mu      sync.Mutex // guards all
+}
+
+// lookedAt is a value, by its product, in a first look or in one that counts.
+type lookedAt struct {
+	p     *workbook.Product
+	rough bool
 }
 
 // confirm looks for the unfavourable ends at a value, from those known already on, and keeps them. Where nothing is known it goes by the effect of
 // each end alone.
 func (g *guide) confirm(p *workbook.Product) ([]rules.Finding, error) {
-	s, err := g.searching(p)
+	s, hints, err := g.typed(p)
 	if err != nil {
 		return nil, err
 	}
-	s.brief = s.hints == nil
+	s.hints, s.also, s.brief = hints, nil, hints == nil
 	return g.search(s)
 }
 
 // afresh looks for them from nothing too, as check does, unless those known lead to a limit that is missed.
 func (g *guide) afresh(p *workbook.Product) ([]rules.Finding, error) {
-	s, err := g.searching(p)
+	s, hints, err := g.typed(p)
 	if err != nil {
 		return nil, err
 	}
-	if s.hints != nil {
+	s.hints, s.also, s.brief = hints, nil, false
+	if hints != nil {
 		if found, err := g.search(s); err != nil || !meetsEvery(found) {
 			return found, err
 		}
-		s.also, s.hints = s.hints, nil
+		s.hints, s.also = nil, hints
 		for k, c := range s.worst {
 			s.also[k] = append(slices.Clip(s.also[k]), c)
 		}
@@ -52,15 +61,42 @@ func (g *guide) afresh(p *workbook.Product) ([]rules.Finding, error) {
 	return g.search(s)
 }
 
-// searching starts a search at a value from the corners that are known, if any are.
-func (g *guide) searching(p *workbook.Product) (*search, error) {
-	run, err := g.r.predict(p, model.Options{})
-	if err != nil {
-		return nil, g.r.located(p, err)
+// typed starts a search at a value, or takes that of before, with what its own values give; hints are the corners that are known, nil if none are.
+func (g *guide) typed(p *workbook.Product) (s *search, hints [][]corner, err error) {
+	limits, hints := g.known()
+	if limits == nil {
+		run, err := g.r.predict(p, model.Options{})
+		if err != nil {
+			return nil, nil, g.r.located(p, err)
+		}
+		s = g.r.searching(p, run.find(g.r.plan.Limits), model.Options{})
+		g.mu.Lock()
+		defer g.mu.Unlock()
+		g.marched, g.at = marched(run.history), map[lookedAt]*search{{p, false}: s}
+		return s, nil, nil
 	}
-	s := g.r.searching(p, run.find(g.r.plan.Limits), model.Options{})
-	_, s.hints = g.known()
-	return s, nil
+	s = g.of(p, limits, false)
+	if err := s.need(forAll([]corner{make(corner, len(p.Spreads))})); err != nil {
+		return nil, nil, g.r.located(p, err)
+	}
+	return s, hints, nil
+}
+
+// of is the search at a value, with all that was judged there before.
+func (g *guide) of(p *workbook.Product, limits []*rules.Limit, rough bool) *search {
+	g.mu.Lock()
+	defer g.mu.Unlock()
+	s := g.at[lookedAt{p, rough}]
+	if s == nil {
+		s = &search{r: g.r, p: p, options: model.Options{Rough: rough}, limits: limits, solved: map[string]*cornerFindings{}}
+		g.at[lookedAt{p, rough}] = s
+	}
+	return s
+}
+
+// marched tells whether any step of a history was marched.
+func marched(h *model.History) bool {
+	return slices.ContainsFunc(h.Spans, func(sp model.Span) bool { return sp.Method == model.Marched })
 }
 
 // search looks for the unfavourable ends at a value and keeps them.
@@ -78,14 +114,51 @@ func (g *guide) search(s *search) ([]rules.Finding, error) {
 	return rules.Conclude(findings, g.r.plan.Groups).Findings, nil
 }
 
-// look judges a value at the corners that are known. Where a start lies on either side of what starts the clock of a limit, the places just
-// beside that are tried too: they move with the value.
+// look judges a value at the corners that are known; what has to be marched by a first look, where that is plain.
 func (g *guide) look(p *workbook.Product) ([]rules.Finding, error) {
-	limits, worst := g.known()
+	limits, _ := g.known()
 	if limits == nil {
 		return g.confirm(p)
 	}
-	s := &search{r: g.r, p: p, limits: limits, solved: map[string]*cornerFindings{}}
+	if g.marches() {
+		if found, err := g.lookOnce(p, true); err == nil && plain(found) {
+			return found, nil
+		}
+	}
+	return g.exactly(p)
+}
+
+// marches tells whether the product has to be marched.
+func (g *guide) marches() bool {
+	g.mu.Lock()
+	defer g.mu.Unlock()
+	return g.marched
+}
+
+// exactly is look without first looks.
+func (g *guide) exactly(p *workbook.Product) ([]rules.Finding, error) {
+	if limits, _ := g.known(); limits == nil {
+		return g.confirm(p)
+	}
+	return g.lookOnce(p, false)
+}
+
+// plainK is how far a margin has to lie from nought in a first look for its verdict to be taken, K: six times the error that such a look is taken to have.
+const plainK = 0.3
+
+// plain tells whether every verdict on a limit that must be met is plain from a first look.
+func plain(found []rules.Finding) bool {
+	return !slices.ContainsFunc(found, func(f rules.Finding) bool {
+		sure := f.Verdict == rules.Met && f.MarginK != nil && *f.MarginK > plainK || f.Verdict == rules.NotMet && f.MarginK != nil && *f.MarginK < -plainK
+		return !sure && f.Limit.Kind != rules.Stated
+	})
+}
+
+// lookOnce judges a value at the corners that are known. Where a start lies on either side of what starts the clock of a limit, the places just
+// beside that are tried too: they move with the value.
+func (g *guide) lookOnce(p *workbook.Product, rough bool) ([]rules.Finding, error) {
+	limits, worst := g.known()
+	s := g.of(p, limits, rough)
 	var list []ask
 	tried := make([][]corner, len(limits))
 	for k := range limits {

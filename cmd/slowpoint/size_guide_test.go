@@ -3,6 +3,7 @@ package main
 import (
 	"fmt"
 	"math/rand/v2"
+	"slices"
 	"testing"
 
 	"slowpoint/cmd/slowpoint/workbook"
@@ -49,6 +50,97 @@ func TestSizeGoesByTheEndsFoundBeside(t *testing.T) {
 		got, want := r.size(p, d, r.judges(p), "", 2), r.size(p, d, r.afresh(), "", 2)
 		if said, should := answerOf(got.Answer), answerOf(want.Answer); said != should {
 			t.Errorf("plan %d, %s: %s, afresh %s", n, d.what, said, should)
+		}
+	}
+}
+
+// marchedWall is the wall of a food whose properties follow its temperature, so that it has to be marched. No real food.
+func marchedWall() (*runner, *workbook.Product) {
+	r, p := wall()
+	r.head, r.options = &report.Head{EveryS: 60}, &checkOptions{}
+	p.Food = &model.Material{Name: "Mash", Source: "made up", Table: true, LowC: -20, HighC: 200, Props: func(c float64) model.Properties {
+		return model.Properties{KWmK: 0.44 + 0.0013*c, RhoKgM3: 1050, CJkgK: 3400 + 3*c}
+	}}
+	return r, p
+}
+
+// A first look at what has to be marched is taken only where it is plain: the answer, its neighbour and all runs are those of a search without.
+func TestFirstLooksLeadToTheSameSizes(t *testing.T) {
+	for _, c := range []struct {
+		name, vary string
+		spreads    []workbook.Spread
+	}{
+		{"thickness", "", nil},
+		{"start", "start temperature", nil},
+		{"duration", "duration Oven", nil},
+		{"thickness at its ends", "", []workbook.Spread{vary("thickness", -1, 0.001, 0.003, false), vary("film coefficient", 1, 0.25, 0.2, true)}},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			r, p := marchedWall()
+			p.Spreads = c.spreads
+			d, err := r.dialOf(p, &sizeOptions{vary: c.vary})
+			if err != nil {
+				t.Fatal(err)
+			}
+			rough := 0
+			j := r.judges(p)
+			look := j.look
+			j.look = func(q *workbook.Product) ([]rules.Finding, error) {
+				found, err := look(q)
+				if sure, _ := j.exactly(q); err == nil && !slices.EqualFunc(found, sure, func(a, b rules.Finding) bool { return a.Same(&b) }) {
+					rough++
+				}
+				return found, err
+			}
+			got := r.size(p, d, j, "", 1)
+			if got.Now.Refused != "" {
+				t.Fatal(got.Now.Refused)
+			}
+			if rough == 0 {
+				t.Error("no first look was taken")
+			}
+			j = r.judges(p)
+			j.look = j.exactly
+			if len(c.spreads) > 0 {
+				j = r.afresh()
+			}
+			want := r.size(p, d, j, "", 2)
+			if said, should := runsOf(got), runsOf(want); said != should {
+				t.Errorf("%s, without first looks %s", said, should)
+			}
+			for _, pt := range []*report.SizePoint{got.Answer, got.Next} {
+				if pt == nil { // the answer lies at the end of the range
+					continue
+				}
+				i := slices.IndexFunc(want.Curve, func(o *report.SizePoint) bool { return o.Value == pt.Value })
+				if i < 0 || !slices.EqualFunc(pt.Findings, want.Curve[i].Findings, func(a, b rules.Finding) bool { return a.Verdict == b.Verdict && (c.spreads != nil || a.Same(&b)) }) {
+					t.Errorf("%+v was not judged exactly", pt)
+				}
+			}
+		})
+	}
+}
+
+// runsOf are the runs of values that meet, the answer and its neighbour, in words.
+func runsOf(s *report.Sizing) string {
+	out := answerOf(s.Answer) + ", next " + answerOf(s.Next)
+	for _, m := range s.Meets {
+		out += fmt.Sprintf("; %s to %s", m[0].Words, m[1].Words)
+	}
+	return out
+}
+
+// BenchmarkSizeMarched is the search of a food whose properties follow its temperature, at the ends of two quantities.
+func BenchmarkSizeMarched(b *testing.B) {
+	r, p := marchedWall()
+	p.Spreads = []workbook.Spread{vary("thickness", -1, 0.001, 0.003, false), vary("film coefficient", 1, 0.25, 0.2, true)}
+	d, err := r.dialOf(p, &sizeOptions{})
+	if err != nil {
+		b.Fatal(err)
+	}
+	for b.Loop() {
+		if s := r.size(p, d, r.judges(p), spreadBasis, 1); s.Answer == nil || s.Next == nil {
+			b.Fatal("no answer")
 		}
 	}
 }

@@ -5,6 +5,7 @@ import (
 	"math"
 	"slices"
 	"sync"
+	"sync/atomic"
 
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
@@ -22,9 +23,9 @@ const (
 // judgement gives the findings on a product with its steps; a search knows nothing else of how they come about.
 type judgement func(p *workbook.Product) ([]rules.Finding, error)
 
-// judges are the two ways to judge a value in a search: look at what is known, confirm searches on from
-// there until nothing is worse; nil if look does. afresh does so from nothing, as check does.
-type judges struct{ look, confirm, afresh judgement }
+// judges are the ways to judge a value in a search: look at what is known, exactly does so without first looks at what has to be marched (nil:
+// look takes none), confirm searches on from there until nothing is worse (nil: look does). afresh does so from nothing, as check does.
+type judges struct{ look, exactly, confirm, afresh judgement }
 
 // sure is the way that searches on.
 func (j judges) sure() judgement {
@@ -38,14 +39,35 @@ func (j judges) sure() judgement {
 func (r *runner) judges(p *workbook.Product) judges {
 	if len(p.Spreads) > 0 {
 		g := &guide{r: r}
-		return judges{look: g.look, confirm: g.confirm, afresh: g.afresh}
+		return judges{look: g.look, exactly: g.exactly, confirm: g.confirm, afresh: g.afresh}
 	}
-	return judges{look: func(p *workbook.Product) ([]rules.Finding, error) {
-		run, err := r.predict(p, model.Options{})
+	var marches atomic.Bool
+	judge := func(p *workbook.Product, o model.Options) ([]rules.Finding, error) {
+		run, err := r.predict(p, o)
 		if err != nil {
 			return nil, r.located(p, err)
 		}
+		marches.Store(marched(run.history))
 		return rules.Conclude(run.find(r.plan.Limits), r.plan.Groups).Findings, nil
+	}
+	var sure sync.Map // by product: what is sure is judged once
+	exactly := func(p *workbook.Product) ([]rules.Finding, error) {
+		if found, ok := sure.Load(p); ok {
+			return slices.Clone(found.([]rules.Finding)), nil
+		}
+		found, err := judge(p, model.Options{})
+		if err == nil {
+			sure.Store(p, slices.Clone(found))
+		}
+		return found, err
+	}
+	return judges{exactly: exactly, confirm: exactly, look: func(p *workbook.Product) ([]rules.Finding, error) {
+		if marches.Load() {
+			if found, err := judge(p, model.Options{Rough: true}); err == nil && plain(found) {
+				return found, nil
+			}
+		}
+		return exactly(p)
 	}}
 }
 
@@ -60,7 +82,7 @@ func (j judges) without(fixed []*rules.Limit) judges {
 			return slices.DeleteFunc(fs, func(f rules.Finding) bool { return slices.Contains(fixed, f.Limit) }), err
 		}
 	}
-	return judges{look: less(j.look), confirm: less(j.confirm), afresh: less(j.afresh)}
+	return judges{look: less(j.look), exactly: less(j.exactly), confirm: less(j.confirm), afresh: less(j.afresh)}
 }
 
 // meetsEvery tells whether a must limit applies and all that do are met.
@@ -87,22 +109,32 @@ type examined struct {
 
 // scan is a search along a dial.
 type scan struct {
-	p       *workbook.Product
-	d       *dial
-	judges  judges
-	workers int       // how many values are judged at once
-	now     *examined // the product as it is; nil: of no account
-	seen    map[int]*examined
-	spacing int // of the grid, in steps
+	p        *workbook.Product
+	d        *dial
+	judges   judges
+	workers  int       // how many values are judged at once
+	now      *examined // the product as it is; nil: of no account
+	seen     map[int]*examined
+	products map[int]*workbook.Product // at each step
+	spacing  int                       // of the grid, in steps
 }
 
-// try judges the product with one value, given as it is computed in.
-func (s *scan) try(value float64, judge judgement) *examined {
-	q := *s.p
-	q.Steps = slices.Clone(s.p.Steps)
-	s.d.set(&q, value)
-	return examine(&q, judge)
+// product is the product at a step, always the same one.
+func (s *scan) product(k int) *workbook.Product {
+	if s.products == nil {
+		s.products = map[int]*workbook.Product{}
+	}
+	if s.products[k] == nil {
+		q := *s.p
+		q.Steps = slices.Clone(s.p.Steps)
+		s.d.set(&q, s.d.value(k))
+		s.products[k] = &q
+	}
+	return s.products[k]
 }
+
+// try judges a step.
+func (s *scan) try(k int, judge judgement) *examined { return examine(s.product(k), judge) }
 
 // examine judges a product.
 func examine(p *workbook.Product, judge judgement) *examined {
@@ -118,7 +150,7 @@ func (s *scan) at(k int) *examined {
 	if e := s.seen[k]; e != nil {
 		return e
 	}
-	e := s.try(s.d.value(k), s.judges.look)
+	e := s.try(k, s.judges.look)
 	s.seen[k] = e
 	return e
 }
@@ -133,8 +165,9 @@ func (s *scan) all(ks []int) {
 			continue
 		}
 		slots <- struct{}{}
+		q := s.product(k)
 		working.Go(func() {
-			out[i] = s.try(s.d.value(k), s.judges.look)
+			out[i] = examine(q, s.judges.look)
 			<-slots
 		})
 	}
@@ -168,7 +201,7 @@ func (s *scan) begin() {
 		return
 	}
 	for k := s.d.lo; k <= s.d.hi; k += max(1, (s.d.hi-s.d.lo+sizeGrid-1)/sizeGrid) {
-		if s.try(s.d.value(k), s.judges.confirm).err == nil {
+		if s.try(k, s.judges.confirm).err == nil {
 			return
 		}
 	}
@@ -190,7 +223,7 @@ func (s *scan) answers() bool {
 	if s.judges.afresh == nil || !found {
 		return true
 	}
-	e := s.try(s.d.value(told), s.judges.afresh)
+	e := s.try(told, s.judges.afresh)
 	e.confirmed = true
 	s.seen[told] = e
 	return e.meets
@@ -218,11 +251,18 @@ func (s *scan) confirm() bool {
 	holds := true
 	for i, k := range ks {
 		now := s.seen[k]
-		within := i > 0 && s.seen[ks[i-1]].meets && i+1 < len(ks) && s.seen[ks[i+1]].meets
+		before, after := i > 0 && s.seen[ks[i-1]].meets, i+1 < len(ks) && s.seen[ks[i+1]].meets
+		if !now.meets && !now.confirmed && (before || after) && s.judges.exactly != nil { // the neighbour of a run
+			sure[k] = s.try(k, s.judges.exactly)
+			sure[k].confirmed = true
+			holds = holds && !sure[k].meets
+			continue
+		}
+		within := before && after
 		if now.confirmed || !now.meets || within || k == told && s.judges.afresh != nil {
 			continue
 		}
-		sure[k] = s.try(s.d.value(k), s.judges.confirm)
+		sure[k] = s.try(k, s.judges.confirm)
 		sure[k].confirmed = true
 		holds = holds && sure[k].meets
 	}
@@ -355,7 +395,7 @@ func (r *runner) size(p *workbook.Product, d *dial, j judges, basis string, work
 	fixed := s.fixed()
 	if len(fixed) > 0 {
 		all := s
-		s = &scan{p: p, d: d, workers: workers, judges: j.without(fixed)}
+		s = &scan{p: p, d: d, workers: workers, judges: j.without(fixed), products: all.products}
 		if s.run(); len(s.fixed()) > 0 || !slices.ContainsFunc(s.steps(), func(k int) bool { return s.seen[k].meets }) {
 			s, fixed = all, nil
 		}
