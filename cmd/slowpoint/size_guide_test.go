@@ -173,3 +173,30 @@ func answerOf(p *report.SizePoint) string {
 	}
 	return p.Words
 }
+
+// A first look is taken only where the margin of every limit is known and farther from nought than its error could carry it.
+func TestPlain(t *testing.T) {
+	k := func(x float64) *float64 { return &x }
+	hold, stated := &rules.Limit{Kind: rules.Hold}, &rules.Limit{Kind: rules.Stated}
+	far := rules.Finding{Limit: hold, Verdict: rules.Met, MarginK: k(2)}
+	for _, c := range []struct {
+		name string
+		also rules.Finding
+		want bool
+	}{
+		{"met by far", rules.Finding{Limit: hold, Verdict: rules.Met, MarginK: k(0.31)}, true},
+		{"met within six times the error", rules.Finding{Limit: hold, Verdict: rules.Met, MarginK: k(0.29)}, false},
+		{"missed by far", rules.Finding{Limit: hold, Verdict: rules.NotMet, MarginK: k(-0.31)}, true},
+		{"missed within six times the error", rules.Finding{Limit: hold, Verdict: rules.NotMet, MarginK: k(-0.29)}, false},
+		{"no margin", rules.Finding{Limit: hold, Verdict: rules.Met}, false},
+		{"cannot tell", rules.Finding{Limit: hold, Verdict: rules.CannotTell, MarginK: k(3)}, false},
+		{"not applicable", rules.Finding{Limit: hold, Verdict: rules.NotApplicable}, false},
+		{"stated", rules.Finding{Limit: stated, Verdict: rules.Met}, true},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			if got := plain([]rules.Finding{far, c.also}); got != c.want {
+				t.Errorf("%v", got)
+			}
+		})
+	}
+}
