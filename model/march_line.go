@@ -151,20 +151,24 @@ type lineMarch struct {
 	qs                        [2]float64 // flow over each face at the end of the last solve, W/m²: of the equations that were solved, so that what comes in is what is gained
 	q0, q2                    float64    // flow over both faces now and after the last try, W/m²
 	tryJ, inJ                 float64    // heat that came in over the faces in the last try, and since the start, J/m²
+	sharp                     bool       // ice forms at one temperature in a layer
+	closeK                    float64    // a correction so small ends Newton's method, K
 	fresh                     bool       // no step since the surroundings changed: nothing to guess from
 }
 
 func newLineMarch(g *lineGrid, laws []*law) *lineMarch {
-	m := &lineMarch{lineGrid: g, laws: laws}
+	m := &lineMarch{lineGrid: g, laws: laws, closeK: newtonK}
 	n := len(g.x)
 	for _, s := range []*[]float64{&m.spread, &m.fore, &m.aft, &m.h, &m.u, &m.rate, &m.c, &m.slope, &m.uRate, &m.rate2, &m.c2, &m.slope2, &m.uRate2,
 		&m.h1, &m.h2, &m.u1, &m.u2, &m.b, &m.f0, &m.f1, &m.f2, &m.mean, &m.meanU, &m.meanF, &m.meanA, &m.temp, &m.tempU, &m.low, &m.diag, &m.up, &m.delta} {
 		*s = make([]float64, n)
 	}
 	for _, p := range g.parts {
-		if !laws[g.food[p[0]]].sharp() { // else a volume turns at once, when the front passes its node
-			m.within(p)
+		if laws[g.food[p[0]]].sharp() { // a volume turns at once, when the front passes its node
+			m.sharp, m.closeK = true, newtonSharpK
+			continue
 		}
+		m.within(p)
 	}
 	return m
 }
@@ -217,13 +221,19 @@ const leastSpread = 1e-6
 
 // look reads mean heat contents of the volumes with their slopes, and temperatures where flows need them: at faces and joints.
 func (m *lineMarch) look(u []float64) {
+	n := len(u)
+	mean, meanU, meanF, meanA := m.mean[:n], m.meanU[:n], m.meanF[:n], m.meanA[:n]
+	wFore, wAft, spread := m.fore[:n], m.aft[:n], m.spread[:n]
 	for _, p := range m.parts {
 		l := m.laws[m.food[p[0]]].byU
+		fore, aft := 0.0, 0.0
 		for i := p[0]; i <= p[1]; i++ {
 			x := u[i]
-			fore, aft := u[max(i-1, p[0])]-x, u[min(i+1, p[1])]-x
-			c := x + m.fore[i]*fore + m.aft[i]*aft
-			sign := m.spread[i]
+			if fore, aft = -aft, 0; i < p[1] {
+				aft = u[i+1] - x
+			}
+			f, a := wFore[i], wAft[i]
+			sign := spread[i]
 			d := (aft - fore) * sign
 			if d < 0 {
 				d, sign = -d, -sign
@@ -231,15 +241,15 @@ func (m *lineMarch) look(u []float64) {
 			if d < leastSpread {
 				d, sign = leastSpread, 0
 			}
-			mean, slope, wide := l.mean(c, d)
+			h, slope, wide := l.mean(x+f*fore+a*aft, d)
 			wide *= sign
-			m.mean[i], m.meanF[i], m.meanA[i] = mean, slope*m.fore[i]-wide, slope*m.aft[i]+wide
-			m.meanU[i] = slope * (1 - m.fore[i] - m.aft[i])
+			mean[i], meanF[i], meanA[i] = h, slope*f-wide, slope*a+wide
+			meanU[i] = slope * (1 - f - a)
 		}
 		if p[0] < p[1] { // their only neighbour
-			m.meanU[p[0]] += m.meanF[p[0]]
-			m.meanU[p[1]] += m.meanA[p[1]]
-			m.meanF[p[0]], m.meanA[p[1]] = 0, 0
+			meanU[p[0]] += meanF[p[0]]
+			meanU[p[1]] += meanA[p[1]]
+			meanF[p[0]], meanA[p[1]] = 0, 0
 		}
 		for _, i := range p {
 			m.temp[i], m.tempU[i] = l.temperature(u[i])
@@ -250,14 +260,13 @@ func (m *lineMarch) look(u []float64) {
 // flows fills f with what flows into every volume, W/m², at u, from the last look, at tau s into the step, and the slopes of the faces' flows by u.
 func (m *lineMarch) flows(f, u []float64, tau float64) (slope [2]float64) {
 	n := len(f)
+	u, links := u[:n], m.links[:n-1]
 	in := 0.0
-	for i := 0; i < n-1; i++ {
-		l := &m.links[i]
-		var q float64
+	for i := range links {
+		l := &links[i]
+		q := l.g * (u[i+1] - u[i])
 		if l.joint {
 			q = l.g * (m.temp[i+1] - m.temp[i])
-		} else {
-			q = l.g * (u[i+1] - u[i])
 		}
 		f[i] = q - in
 		in = q
@@ -307,8 +316,9 @@ func (m *lineMarch) begin(tau float64) {
 	m.temperatures(m.u, m.rate, m.c, m.slope, m.uRate, tau)
 }
 
-// Newton's method ends with a correction this small, K, or, where nothing freezes or melts, with one whose square is.
-const newtonK, newtonSmoothK = 1e-4, 5e-3
+// Newton's method ends with a correction this small, K; where ice forms all but at one temperature with a smaller one, and with one whose square is
+// where nothing freezes or melts or where it comes to its end ever faster.
+const newtonK, newtonSharpK, newtonSmoothK = 1e-3, 1e-4, 5e-3
 
 // unfrozenK is the conductivity that turns Kirchhoff integrals into temperatures where only their size counts, W/(m·K): below that of any
 // food that freezes, so that temperatures come out large.
@@ -317,28 +327,33 @@ const unfrozenK = 0.2
 // solve finds the u of w·h(u) = b + a·F(u) at tau, from u on, and h; it says whether it did.
 func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
 	n := len(u)
+	links, w := m.links[:n-1], m.w[:n]
+	delta, diag, low, up := m.delta[:n], m.diag[:n], m.low[:n], m.up[:n]
+	mean, meanU, meanF, meanA := m.mean[:n], m.meanU[:n], m.meanF[:n], m.meanA[:n]
+	worst := math.Inf(1)
 	for try := 0; try < 20; try++ {
 		m.look(u)
-		slope := m.flows(m.delta, u, tau)
-		for i := range u {
-			w := m.w[i]
-			m.delta[i] = b[i] + a*m.delta[i] - w*m.mean[i]
-			m.diag[i] = w * m.meanU[i]
-		}
-		for i := 0; i < n-1; i++ {
-			l := &m.links[i]
+		slope := m.flows(delta, u, tau)
+		below := 0.0 // what the node before takes
+		for i, q := range delta {
+			delta[i] = b[i] + a*q - w[i]*mean[i]
+			diag[i] = w[i]*meanU[i] + below
+			if i == n-1 {
+				break
+			}
+			l := &links[i]
 			if l.joint {
-				x, y := a*l.g*m.tempU[i], a*l.g*m.tempU[i+1]
-				m.diag[i] += x
-				m.diag[i+1] += y
-				m.up[i], m.low[i+1] = -y, -x
+				x := a * l.g * m.tempU[i]
+				below = a * l.g * m.tempU[i+1]
+				diag[i] += x
+				up[i], low[i+1] = -below, -x
 				continue
 			}
 			x := a * l.g
-			m.diag[i] += x
-			m.diag[i+1] += x
-			m.up[i] = m.w[i]*m.meanA[i] - x
-			m.low[i+1] = m.w[i+1]*m.meanF[i+1] - x
+			below = x
+			diag[i] += x
+			up[i] = w[i]*meanA[i] - x
+			low[i+1] = w[i+1]*meanF[i+1] - x
 		}
 		m.diag[0] -= a * slope[0]
 		m.diag[n-1] -= a * slope[1]
@@ -354,7 +369,8 @@ func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
 			}
 		}
 		m.factor(m.delta)
-		worst, bent := 0.0, false
+		last, bent := worst, false
+		worst = 0
 		for i, d := range m.delta {
 			u[i] += d
 			bent = bent || u[i] < 0
@@ -366,7 +382,7 @@ func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
 		}
 		m.qs[0] += slope[0] * m.delta[0]
 		m.qs[1] += slope[1] * m.delta[n-1]
-		if worst < newtonK || worst < newtonSmoothK && !bent {
+		if worst < m.closeK || worst < newtonSmoothK && (!bent || !m.sharp && worst < last/10) {
 			m.contents(h, u)
 			return true
 		}
@@ -383,44 +399,79 @@ func (m *lineMarch) contents(h, u []float64) {
 	}
 }
 
-// factor brings the three diagonals to a form that back uses, and solves them for y on the way.
+// factor brings the three diagonals to a form that back uses, and solves them for y on the way. It goes from both ends to the middle at once: each
+// row waits for the one before it, and so two wait at a time.
 func (m *lineMarch) factor(y []float64) {
 	n := len(y)
 	low, diag, up := m.low[:n], m.diag[:n], m.up[:n]
-	d := 1 / diag[0]
-	diag[0] = d
-	last := y[0]
-	for i := 1; i < n; i++ {
-		l := low[i] * d
-		low[i] = l
-		d = 1 / (diag[i] - l*up[i-1])
-		diag[i] = d
-		last = y[i] - l*last
-		y[i] = last
+	mid := (n - 1) / 2
+	d, p := 1/diag[0], y[0] // of the row before, from either end
+	e, q := 1/diag[n-1], y[n-1]
+	diag[0], diag[n-1] = d, e
+	j := n - 2
+	if n%2 == 0 && j > mid {
+		u := up[j] * e
+		e, q = 1/(diag[j]-u*low[j+1]), y[j]-u*q
+		up[j], diag[j], y[j] = u, e, q
+		j--
 	}
-	last *= d
-	y[n-1] = last
-	for i := n - 2; i >= 0; i-- {
-		last = (y[i] - up[i]*last) * diag[i]
-		y[i] = last
+	for i := 1; i < mid; i++ {
+		l, u := low[i]*d, up[j]*e
+		d, e = 1/(diag[i]-l*up[i-1]), 1/(diag[j]-u*low[j+1])
+		p, q = y[i]-l*p, y[j]-u*q
+		low[i], diag[i], y[i] = l, d, p
+		up[j], diag[j], y[j] = u, e, q
+		j--
+	}
+	if n > 1 {
+		u := up[mid] * e
+		pivot := diag[mid] - u*low[mid+1]
+		y[mid] -= u * q
+		up[mid] = u
+		if mid > 0 {
+			l := low[mid] * d
+			pivot -= l * up[mid-1]
+			y[mid] -= l * p
+			low[mid] = l
+		} else { // its own row came first
+			pivot = 1/d - u*low[mid+1]
+		}
+		diag[mid] = 1 / pivot
+	}
+	m.outwards(y)
+}
+
+// outwards finishes what factor and back have brought to the middle row.
+func (m *lineMarch) outwards(y []float64) {
+	n := len(y)
+	low, diag, up := m.low[:n], m.diag[:n], m.up[:n]
+	mid := (n - 1) / 2
+	p := y[mid] * diag[mid]
+	q := p
+	y[mid] = p
+	j := mid + 1
+	for i := mid - 1; i >= 0; i-- {
+		p, q = (y[i]-up[i]*p)*diag[i], (y[j]-low[j]*q)*diag[j]
+		y[i], y[j] = p, q
+		j++
+	}
+	if j < n {
+		y[j] = (y[j] - low[j]*q) * diag[j]
 	}
 }
 
 // back solves the factored diagonals for y.
 func (m *lineMarch) back(y []float64) {
 	n := len(y)
-	low, diag, up := m.low[:n], m.diag[:n], m.up[:n]
-	last := y[0]
-	for i := 1; i < n; i++ {
-		last = y[i] - low[i]*last
-		y[i] = last
+	low, up := m.low[:n], m.up[:n]
+	mid := (n - 1) / 2
+	for i := 1; i <= mid; i++ {
+		y[i] -= low[i] * y[i-1]
 	}
-	last *= diag[n-1]
-	y[n-1] = last
-	for i := n - 2; i >= 0; i-- {
-		last = (y[i] - up[i]*last) * diag[i]
-		y[i] = last
+	for j := n - 2; j >= mid; j-- {
+		y[j] -= up[j] * y[j+1]
 	}
+	m.outwards(y)
 }
 
 // try makes one step of length d from tau; it gives an estimate of its error, K, and +Inf where Newton's method found nothing. The state
@@ -530,7 +581,6 @@ func (m *lineMarch) keep(k *track, t float64) {
 // temperatures fills c with the temperatures at u and slope with what rate, W/m³, makes of them in a second, tau s into the step; held faces go as
 // their media do.
 func (m *lineMarch) temperatures(u, rate, c, slope, uRate []float64, tau float64) {
-	m.look(u)
 	n := len(c)
 	for i := range c {
 		m.delta[i] = rate[i]
