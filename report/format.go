@@ -92,6 +92,9 @@ func (h *Head) difference(k float64, r rounding) string {
 	return h.first(inC, inF)
 }
 
+// Difference writes how much is lost or lacking (K), rounded up: "5.0 °C (9.0 °F)".
+func (h *Head) Difference(k float64) string { return h.difference(k, up) }
+
 // stated writes a temperature that a person stated (°C inside), not rounded beyond a hundredth: "75 °C (167 °F)".
 func (h *Head) stated(c float64) string {
 	return h.first(plain(c, 2, nearest)+" °C", plain(fahrenheit(c), 2, nearest)+" °F")

@@ -6,3 +6,6 @@ import "slowpoint/rules"
 func (r *Row) Room(h *Head) string {
 	return h.room(&rules.Finding{MarginK: r.MarginK, MarginS: r.MarginS, MarginPlace: r.MarginPlace})
 }
+
+// Margin says the margin of a finding in words, as Room does, with the verdict in mind: what is not met has no room.
+func (h *Head) Margin(f *rules.Finding) string { return h.room(f) }

@@ -4,6 +4,7 @@ import (
 	"encoding/json"
 	"fmt"
 	"io"
+	"math"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -81,6 +82,7 @@ type (
 		Products []*compared     `json:"products"`
 		Worse    []string        `json:"worse"` // in sentences
 		partial  bool            // part of a plan could not be used
+		head     *report.Head    // of the new plan: how temperatures are shown
 	}
 	comparedPlan struct {
 		Name   string `json:"name"`
@@ -112,6 +114,7 @@ type (
 		NewMarginK *float64 `json:"new_margin_K"`
 		OldMarginS *float64 `json:"old_margin_s"`
 		NewMarginS *float64 `json:"new_margin_s"`
+		was, is    string   // verdict and room in words
 	}
 	comparedStep struct {
 		Step    string  `json:"step"`
@@ -122,22 +125,33 @@ type (
 		AtS     float64 `json:"at_s"`           // from the start of the step
 		ErrorK  float64 `json:"error_K"`
 		UpToS   float64 `json:"up_to_s"` // the shorter of the two durations
+		Gone    bool    `json:"gone"`    // a step of the old plan alone
 	}
 )
 
 // asked tells whether a changed input is part of what is asked of a product: of limits, groups and tables what is judged, and what the worst
-// case is made of. A row that is new asks for more, and limits that are gone are told product by product.
+// case is made of. A limit that is new asks for more, and limits that are gone are told product by product; a new row of a group, a table or the
+// spread may ask for less.
 func (in *comparedInput) asked() bool {
 	of := func(cell string) bool {
 		sheet, _, _ := strings.Cut(strings.ReplaceAll(cell, "!", " "), " ")
 		return slices.Contains([]string{"Limits", "Groups", "Tables", "Spread"}, sheet)
 	}
-	if !of(in.Was) && !of(in.Is) || in.What == "new" || in.What == "gone" && strings.HasPrefix(in.Was, "Limits") {
+	if !of(in.Was) && !of(in.Is) || in.What == "new" && strings.HasPrefix(in.Is, "Limits") || in.What == "gone" && strings.HasPrefix(in.Was, "Limits") {
 		return false
 	}
 	return !slices.ContainsFunc([]string{"Hazard", "Status", "Code", "Clause", "Edition", "Issued by", "Note", "Basis"}, func(column string) bool {
 		return in.What == column || strings.HasSuffix(in.What, ": "+column)
 	})
+}
+
+// words says what changed.
+func (in *comparedInput) words() string {
+	s := in.Of + ": " + in.What
+	if in.Old+in.New != "" {
+		s += " " + blankWord(in.Old) + " → " + blankWord(in.New)
+	}
+	return s
 }
 
 // judgedPlan is a plan with its products as they were judged, by name.
@@ -190,7 +204,7 @@ func comparePlans(w io.Writer, old, now, date string) (*comparison, *report.Head
 	if err != nil {
 		return nil, nil, err
 	}
-	c := &comparison{Schema: compareSchema, Version: version, Old: comparedPlan{a.plan.Name, a.plan.SHA256}, New: comparedPlan{b.plan.Name, b.plan.SHA256},
+	c := &comparison{head: b.head, Schema: compareSchema, Version: version, Old: comparedPlan{a.plan.Name, a.plan.SHA256}, New: comparedPlan{b.plan.Name, b.plan.SHA256},
 		Inputs: []comparedInput{}, Products: []*compared{}, Worse: []string{}}
 	for _, j := range []*judgedPlan{a, b} {
 		c.partial = c.partial || j.plan.Problems.Faults() > 0 || len(j.head.NotCalculated) > 0 || j.plan.NotImported > 0
@@ -203,20 +217,35 @@ func comparePlans(w io.Writer, old, now, date string) (*comparison, *report.Head
 		in := comparedInput{ch.Product, ch.What, ch.Before, ch.Now, ch.Was, ch.Cell}
 		c.Inputs = append(c.Inputs, in)
 		if in.asked() {
-			c.worse("what is asked changed, so that verdicts and margins do not compare: %s: %s %s → %s", in.Of, in.What, in.Old, in.New)
+			c.worse("what is asked changed, so that verdicts and margins do not compare: %s", in.words())
 		}
 	}
 	for i := range b.plan.Products {
 		p := &b.plan.Products[i]
-		if x := b.by[workbook.Key(p.Name)]; x != nil {
-			c.product(a.by[workbook.Key(p.Name)], x)
+		x, was := b.by[workbook.Key(p.Name)], a.by[workbook.Key(p.Name)]
+		switch {
+		case x == nil: // told below
+		case was == nil && a.refused(p.Name):
+			c.Products = append(c.Products, uncompared(p.Name, notCalculated, x.Judgement.Verdict.String()))
+			if x.Judgement.Verdict != rules.Met {
+				c.worse("%s: %s → %s", p.Name, notCalculated, x.Judgement.Verdict)
+			}
+		default:
+			c.product(was, x)
 		}
 	}
 	for i := range a.plan.Products {
-		p := &a.plan.Products[i]
-		x := a.by[workbook.Key(p.Name)]
-		if x != nil && b.by[workbook.Key(p.Name)] == nil {
-			c.Products = append(c.Products, &compared{Product: p.Name, State: "gone", Old: x.Judgement.Verdict.String(), Limits: []*comparedLimit{}, Steps: []*comparedStep{}})
+		name := a.plan.Products[i].Name
+		x := a.by[workbook.Key(name)]
+		switch {
+		case x == nil || b.by[workbook.Key(name)] != nil:
+		case b.refused(name):
+			c.Products = append(c.Products, uncompared(name, x.Judgement.Verdict.String(), notCalculated))
+			c.worse("%s: %s → %s", name, x.Judgement.Verdict, notCalculated)
+		default:
+			gone := uncompared(name, x.Judgement.Verdict.String(), "")
+			gone.State = "gone"
+			c.Products = append(c.Products, gone)
 		}
 	}
 	return c, b.head, nil
@@ -224,6 +253,19 @@ func comparePlans(w io.Writer, old, now, date string) (*comparison, *report.Head
 
 func (c *comparison) worse(format string, args ...any) {
 	c.Worse = append(c.Worse, fmt.Sprintf(format, args...))
+}
+
+// notCalculated stands for the verdict of a product that is in a plan and cannot be calculated.
+const notCalculated = "not calculated"
+
+// refused tells whether a product of the plan could not be calculated.
+func (j *judgedPlan) refused(name string) bool {
+	return slices.ContainsFunc(j.head.NotCalculated, func(n report.NotCalculated) bool { return sameName(n.Product, name) })
+}
+
+// uncompared is a product with a verdict on one side only.
+func uncompared(name, old, now string) *compared {
+	return &compared{Product: name, State: "both", Old: old, New: now, Limits: []*comparedLimit{}, Steps: []*comparedStep{}}
 }
 
 // product compares one product with what it was; old is nil for a new one.
@@ -256,6 +298,7 @@ func (c *comparison) product(old, now *report.Product) {
 		l := &comparedLimit{Limit: g.Limit.Name, Level: g.Level, State: "both", New: g.Verdict.String(), NewMarginK: g.MarginK, NewMarginS: g.MarginS}
 		out.Limits = append(out.Limits, l)
 		f := find(old, g.Limit.Name)
+		l.was, l.is = worded(c.head, f), worded(c.head, g)
 		if f == nil {
 			l.State = "new"
 			if missed(g) {
@@ -265,18 +308,19 @@ func (c *comparison) product(old, now *report.Product) {
 		}
 		l.Old, l.OldMarginK, l.OldMarginS = f.Verdict.String(), f.MarginK, f.MarginS
 		switch {
-		case weigh(g.Verdict) < weigh(f.Verdict) && g.Verdict != rules.NotApplicable:
+		case g.Verdict == rules.NotApplicable && f.Verdict != rules.NotApplicable && f.Level != "advice",
+			weigh(g.Verdict) < weigh(f.Verdict) && g.Verdict != rules.NotApplicable:
 			c.worse("%s: %q %s → %s", name, l.Limit, l.Old, l.New)
 		case g.Verdict == rules.NotApplicable || f.Verdict == rules.NotApplicable:
 		case f.MarginK != nil && g.MarginK != nil && *g.MarginK < *f.MarginK-errK-tieMarginK:
-			c.worse("%s: %q has %.2f K less room", name, l.Limit, *f.MarginK-*g.MarginK)
-		case (f.MarginK == nil || g.MarginK == nil) && f.MarginS != nil && g.MarginS != nil && *g.MarginS < *f.MarginS-tieMarginS:
-			c.worse("%s: %q has %s less room", name, l.Limit, minutes(*f.MarginS-*g.MarginS))
+			c.worse("%s: %q has %s less room", name, l.Limit, c.head.Difference(*f.MarginK-*g.MarginK))
+		case f.MarginS != nil && g.MarginS != nil && *g.MarginS < *f.MarginS-tieMarginS-max(errorS(f, errK), errorS(g, errK)):
+			c.worse("%s: %q has %s less room", name, l.Limit, report.Duration(*f.MarginS-*g.MarginS))
 		}
 	}
 	for i := range old.Judgement.Findings {
 		if f := &old.Judgement.Findings[i]; find(now, f.Limit.Name) == nil {
-			out.Limits = append(out.Limits, &comparedLimit{Limit: f.Limit.Name, Level: f.Level, State: "gone", Old: f.Verdict.String(), OldMarginK: f.MarginK, OldMarginS: f.MarginS})
+			out.Limits = append(out.Limits, &comparedLimit{Limit: f.Limit.Name, Level: f.Level, State: "gone", Old: f.Verdict.String(), OldMarginK: f.MarginK, OldMarginS: f.MarginS, was: worded(c.head, f), is: "gone"})
 			if f.Level != "advice" && f.Verdict != rules.NotApplicable {
 				c.worse("%s: limit %q is gone", name, f.Limit.Name)
 			}
@@ -285,9 +329,17 @@ func (c *comparison) product(old, now *report.Product) {
 	out.Steps = stepsBeside(old.History, now.History)
 	for _, s := range out.Steps {
 		if s.Verdict != "no" {
-			c.worse("%s: %s", name, s.words())
+			c.worse("%s: %s", name, s.words(c.head))
 		}
 	}
+}
+
+// errorS is about what an error in temperature makes of a margin in time, s: as much of it as it makes of the margin in temperature.
+func errorS(f *rules.Finding, errK float64) float64 {
+	if f.MarginK == nil || *f.MarginK == 0 {
+		return 0
+	}
+	return math.Abs(*f.MarginS / *f.MarginK) * errK
 }
 
 // stepsBeside compares the slowest places of two histories in the steps that have the same name and stage in both, in their order: the
@@ -300,18 +352,9 @@ func stepsBeside(a, b *model.History) []*comparedStep {
 		if !heats && now.Step.Stage != model.Cool && now.Step.Stage != model.Freeze {
 			continue
 		}
-		s := &comparedStep{Step: now.Step.Name, Place: "hottest", Verdict: "cannot tell"}
-		if heats {
-			s.Place = "coldest"
-		}
+		s := besideNothing(now.Step)
 		out = append(out, s)
-		was := (*model.Span)(nil)
-		for k := range a.Spans {
-			if x := &a.Spans[k]; sameName(x.Step.Name, now.Step.Name) && x.Step.Stage == now.Step.Stage {
-				was = x
-				break
-			}
-		}
+		was := counterpart(a, now.Step)
 		if was == nil {
 			continue
 		}
@@ -343,33 +386,61 @@ func stepsBeside(a, b *model.History) []*comparedStep {
 			s.Verdict = "no"
 		}
 	}
+	for i := range a.Spans {
+		if st := a.Spans[i].Step; (st.Stage.Heats || st.Stage == model.Cool || st.Stage == model.Freeze) && counterpart(b, st) == nil {
+			gone := besideNothing(st)
+			gone.Gone = true
+			out = append(out, gone)
+		}
+	}
 	return out
 }
 
+// besideNothing is a step with nothing to compare it with.
+func besideNothing(st *model.Step) *comparedStep {
+	s := &comparedStep{Step: st.Name, Place: "hottest", Verdict: "cannot tell"}
+	if st.Stage.Heats {
+		s.Place = "coldest"
+	}
+	return s
+}
+
+// counterpart finds the step of a history with the name and stage of another; nil if there is none.
+func counterpart(h *model.History, st *model.Step) *model.Span {
+	for k := range h.Spans {
+		if x := &h.Spans[k]; sameName(x.Step.Name, st.Name) && x.Step.Stage == st.Stage {
+			return x
+		}
+	}
+	return nil
+}
+
 // words says how a step compares.
-func (s *comparedStep) words() string {
+func (s *comparedStep) words(h *report.Head) string {
 	way := "cool"
 	if s.Place == "coldest" {
 		way = "heat"
 	}
 	switch {
+	case s.Gone:
+		return fmt.Sprintf("%s is gone", s.Step)
 	case s.UpToS == 0:
 		return fmt.Sprintf("%s has no counterpart of its name and stage", s.Step)
 	case s.Verdict == "no":
-		return fmt.Sprintf("%s: the %s place is nowhere slower to %s over %s (stated errors %.3f K)", s.Step, s.Place, way, minutes(s.UpToS), s.ErrorK)
+		return fmt.Sprintf("%s: the %s place is nowhere slower to %s over %s (stated errors %.3f K)", s.Step, s.Place, way, report.Duration(s.UpToS), s.ErrorK)
 	case s.Verdict == "yes":
-		return fmt.Sprintf("%s: the %s place is slower to %s, by up to %.2f K after %s (%s)", s.Step, s.Place, way, s.LagK, minutes(s.AtS), s.began())
+		return fmt.Sprintf("%s: the %s place is slower to %s, by up to %s after %s (%s)", s.Step, s.Place, way, h.Difference(s.LagK), report.Duration(s.AtS), s.began(h))
 	}
 	return fmt.Sprintf("%s: whether the %s place is slower to %s cannot be told: %.3f K of %.3f K stated errors", s.Step, s.Place, way, s.LagK, s.ErrorK)
 }
 
 // began says how far behind the place was as the step began: what is behind may be so for what it brings along.
-func (s *comparedStep) began() string {
+func (s *comparedStep) began(h *report.Head) string {
 	switch {
 	case s.BehindK > tieMarginK:
-		return fmt.Sprintf("%.2f K behind as the step began", s.BehindK)
+		return h.Difference(s.BehindK) + " behind as the step began"
 	case s.BehindK < -tieMarginK:
-		return fmt.Sprintf("%.2f K ahead as the step began", -s.BehindK)
+		return h.Difference(-s.BehindK) + " ahead as the step began"
 	}
 	return "level as the step began"
 }
@@ -378,11 +449,7 @@ func (s *comparedStep) began() string {
 func (c *comparison) tell(w io.Writer) {
 	fmt.Fprintf(w, "%s → %s: %s\n", c.Old.Name, c.New.Name, count(len(c.Inputs), "changed input"))
 	for _, i := range c.Inputs {
-		fmt.Fprintf(w, "  %s: %s", i.Of, i.What)
-		if i.Old+i.New != "" {
-			fmt.Fprintf(w, " %s → %s", blankWord(i.Old), blankWord(i.New))
-		}
-		fmt.Fprintf(w, " (%s → %s)\n", dash(i.Was), dash(i.Is))
+		fmt.Fprintf(w, "  %s (%s → %s)\n", i.words(), dash(i.Was), dash(i.Is))
 	}
 	for _, p := range c.Products {
 		fmt.Fprintf(w, "\n%s: ", p.Product)
@@ -395,16 +462,19 @@ func (c *comparison) tell(w io.Writer) {
 			fmt.Fprintf(w, "%s → %s\n", p.Old, p.New)
 		}
 		for _, l := range p.Limits {
-			fmt.Fprintf(w, "  %q (%s): %s → %s; room %s, %s → %s, %s\n", l.Limit, l.Level, dash(l.Old), dash(l.New), marginK(l.OldMarginK), marginS(l.OldMarginS), marginK(l.NewMarginK), marginS(l.NewMarginS))
+			fmt.Fprintf(w, "  %q (%s): %s → %s\n", l.Limit, l.Level, l.was, l.is)
 		}
 		for _, s := range p.Steps {
-			fmt.Fprintf(w, "  %s\n", s.words())
+			fmt.Fprintf(w, "  %s\n", s.words(c.head))
 		}
 	}
 	fmt.Fprintln(w)
-	if len(c.Worse) == 0 {
+	switch {
+	case len(c.Worse) == 0 && c.partial:
+		fmt.Fprintln(w, "Nothing got worse in what could be compared; part of a plan could not be used.")
+	case len(c.Worse) == 0:
 		fmt.Fprintln(w, "Nothing got worse.")
-	} else {
+	default:
 		fmt.Fprintf(w, "Worse: %s\n", count(len(c.Worse), "point"))
 		for _, s := range c.Worse {
 			fmt.Fprintf(w, "  %s\n", s)
@@ -427,18 +497,15 @@ func dash(s string) string {
 	return s
 }
 
-func marginK(k *float64) string {
-	if k == nil {
-		return "– K"
+// worded is a verdict with its room in words.
+func worded(h *report.Head, f *rules.Finding) string {
+	if f == nil {
+		return "–"
 	}
-	return strings.Replace(fmt.Sprintf("%.2f K", *k), "-", "−", 1)
-}
-
-func marginS(s *float64) string {
-	if s == nil {
-		return "– min"
+	if room := h.Margin(f); room != "" {
+		return f.Verdict.String() + ", " + room
 	}
-	return strings.Replace(minutes(*s), "-", "−", 1)
+	return f.Verdict.String()
 }
 
 // write writes compare.json.

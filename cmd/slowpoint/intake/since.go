@@ -45,11 +45,12 @@ func orBlank(s string) string {
 // is not listed, which are named by their first column.
 var keys = map[string][]string{
 	"Products": {"Product"}, "Layers": {"Product", "Layer"}, "Steps": {"Process", "Product", "Step"}, "Faces": {"Process", "Product", "Step", "Face"}, "Points": {"Product", "Point"},
+	"Spread": {"Applies to", "Quantity"},
 }
 
 // nouns name what a row of a sheet belongs to, by its first column; a product needs none.
 var nouns = map[string]string{"Products": "", "Layers": "", "Points": "", "Steps": "process ", "Faces": "process ", "Foods": "food ", "Courses": "course ",
-	"Limits": "limit ", "Groups": "group ", "Tables": "table ", "Plan": "plan: "}
+	"Limits": "limit ", "Groups": "group ", "Tables": "table ", "Plan": "plan: ", "Spread": "spread of ", "Records": "record "}
 
 // held is a value as it is compared.
 type held struct {
@@ -177,7 +178,10 @@ func (s *stock) add(sheet *workbook.Sheet, it *item) {
 			what = append(what, v)
 		}
 	}
-	it.what = strings.Join(what, ", ")
+	if it.what = strings.Join(what, ", "); sheet.Name == "Spread" { // each quantity stands for itself
+		it.owner, it.what = it.owner+", "+it.what, ""
+		it.first = workbook.Key(it.owner)
+	}
 	key := strings.Join(whole, "\x1f")
 	s.count[key]++
 	n := s.count[key]
