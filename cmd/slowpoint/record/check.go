@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"sort"
 	"strings"
 	"time"
 
@@ -54,12 +55,15 @@ func (r *reader) gaps(t *taker, start float64) {
 	}
 	for i := 1; i < n; i++ {
 		d := log.TimesS[i] - log.TimesS[i-1]
-		if d <= most+tiny {
-			continue
+		apart := d > most+tiny
+		if apart || leaps(log.C, i) {
+			if h := t.partBetween(log.Lines[i-1], log.Lines[i]); h > 0 {
+				t.tell(twoTables, h, 0, "", r.src.holder(), fmt.Sprintf("%ss %d to %d", r.src.word(), t.lay.first, log.Lines[i-1]), r.row(log.Lines[i]))
+				return
+			}
 		}
-		if h := t.headsBetween(log.Lines[i-1], log.Lines[i]); h > 0 {
-			t.tell(twoTables, h, 0, "", r.src.holder(), fmt.Sprintf("%ss %d to %d", r.src.word(), t.lay.first, log.Lines[i-1]), r.row(log.Lines[i]))
-			return
+		if !apart {
+			continue
 		}
 		log.Gaps = append(log.Gaps, i-1)
 		if sparse && d <= 3*log.StepS { // told as a whole
@@ -73,14 +77,30 @@ func (r *reader) gaps(t *taker, start float64) {
 	}
 }
 
-// headsBetween gives the line of headings between two lines; 0 if there are none.
-func (t *taker) headsBetween(a, b int32) int32 {
-	for _, h := range t.headsAt {
-		if a < h && h < b {
-			return h
-		}
+// partBetween gives a line of headings or an empty one between two lines; 0 if there is none.
+func (t *taker) partBetween(a, b int32) int32 {
+	a, b = min(a, b), max(a, b) // a record turned round
+	if i := sort.Search(len(t.partsAt), func(i int) bool { return t.partsAt[i] > a }); i < len(t.partsAt) && t.partsAt[i] < b {
+		return t.partsAt[i]
 	}
 	return 0
+}
+
+// leastLeapK is how far readings lie apart at least that leap, K.
+const leastLeapK = 1.0
+
+// leaps tells whether reading i lies further from the one before than those beside ever move.
+func leaps(c []float64, i int) bool {
+	d := math.Abs(c[i] - c[i-1])
+	if d < leastLeapK {
+		return false
+	}
+	for k := max(1, i-neighbours); k <= min(len(c)-1, i+neighbours); k++ {
+		if k != i && overOthers*math.Abs(c[k]-c[k-1]) > d {
+			return false
+		}
+	}
+	return true
 }
 
 // changeHour tells whether clocks may be set forward or back just before a time: in the small hours of a Sunday in spring or autumn.

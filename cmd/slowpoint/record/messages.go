@@ -76,6 +76,7 @@ var (
 	noReadings   = saying{"{1} holds no readings{2}", "check the columns, and export the record again"}
 	oneColumn    = saying{"{1} has one column; a record has its times in one and its temperatures in another", "export both{2}"}
 	oneReading   = saying{"The line has the only reading, {1}; a course is two at least, at different times", "export the whole record: what the temperature was before and after one reading cannot be told from it"}
+	anotherRun   = saying{"may begin another run, and readings follow", "keep one run in the file; a remark within one run stands behind a # in its row"}
 	twoTables    = saying{"{1} holds more than one table: {2}, and again from {3} on", "keep one of them in the file"}
 	skippedRows  = saying{"is no reading; the line is skipped", ""}
 	eventRows    = saying{"The line marks an event and has no reading; it is skipped", ""}

@@ -3,6 +3,7 @@ package record
 import (
 	"bytes"
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -56,7 +57,8 @@ type taker struct {
 	until    int32        // line of the last reading or missing one
 	firstAt  int32        // and of the first
 	ended    bool         // another table begins
-	headsAt  []int32      // lines of the headings once more
+	partsAt  []int32      // lines of the headings once more and empty ones with readings below: another run may begin there
+	emptyAt  int32        // the last empty line since the last reading; 0 if there is none
 	below    int          // rows below the readings with a number under the temperatures
 	echo     echoes
 }
@@ -94,7 +96,8 @@ type pendingRow struct {
 	heads  bool   // the headings once more
 	titled bool   // words in both columns
 	hidden bool
-	number bool // a number under the temperatures, and something under the times
+	number bool   // a number under the temperatures, and something under the times
+	words  string // all that stands in a row of one filled cell
 }
 
 const mostPending = 50
@@ -115,6 +118,7 @@ func (t *taker) take(r *row) error {
 		return nil
 	}
 	if r.blank() {
+		t.emptyAt = r.n
 		return nil
 	}
 	last := r.last()
@@ -138,6 +142,10 @@ func (t *taker) take(r *row) error {
 	if t.rows == t.r.most {
 		return errMany
 	}
+	if t.emptyAt > 0 && t.rows > 0 {
+		t.partsAt = append(t.partsAt, t.emptyAt)
+	}
+	t.emptyAt = 0
 	t.rows++
 	t.until = r.n
 	switch {
@@ -186,7 +194,8 @@ func (t *taker) otherRunEnded(r *row) bool {
 	return true
 }
 
-// remark tells whether a row is of a shape that may stand between readings: one filled cell, or a sign of remarks in front.
+// remark tells whether a row is of a shape that may stand between readings: a sign of remarks in front, or one filled cell with what loggers write
+// of themselves. Other words may name another run.
 func remark(r *row) bool {
 	n := 0
 	var first []byte
@@ -197,8 +206,17 @@ func remark(r *row) bool {
 			}
 		}
 	}
-	return n == 1 || n > 0 && (first[0] == '#' || first[0] == ';' || first[0] == '*' || first[0] == '!' || bytes.HasPrefix(first, []byte("//")) || bytes.HasPrefix(first, []byte("--")))
+	if n == 0 {
+		return false
+	}
+	if bytes.IndexByte([]byte("#;*!"), first[0]) >= 0 || bytes.HasPrefix(first, []byte("//")) || bytes.HasPrefix(first, []byte("--")) {
+		return true
+	}
+	return n == 1 && slices.ContainsFunc(strings.Fields(strings.ToLower(inUTF8(first))), func(word string) bool { return slices.Contains(ofLoggers, strings.Trim(word, ".,:;()")) })
 }
+
+// ofLoggers are words of the lines in which loggers tell of themselves (common practice, no source).
+var ofLoggers = []string{"connected", "disconnected", "logged", "logging", "button", "event", "marker", "host", "memory", "battery", "download", "downloaded", "usb"}
 
 // noReading keeps a row whose time cannot be read until it is known whether readings follow.
 func (t *taker) noReading(r *row, at, temp *field) {
@@ -225,6 +243,12 @@ func (t *taker) wait(r *row, p pendingRow) {
 	k := keep(r)
 	p.hidden = r.hidden
 	p.line, p.text = r.n, strings.Join(strings.Fields(strings.Join(k.text, " ")), " ")
+	filled := slices.DeleteFunc(slices.Clone(k.text), func(s string) bool { return s == "" })
+	if len(filled) == 1 {
+		if v, _ := readNumber([]byte(filled[0])); v.bad != fine {
+			p.words = filled[0]
+		}
+	}
 	t.pending = append(t.pending, p)
 }
 
@@ -237,15 +261,19 @@ func (t *taker) resume(line int32) bool {
 			t.tell(hiddenRow, p.line, 0, "")
 		case p.known:
 			if p.heads {
-				t.headsAt = append(t.headsAt, p.line)
+				t.partsAt = append(t.partsAt, p.line)
 			}
 			t.r.tells.tell(skippedRows, cell.Note, "", p.line, 0, p.text)
 		case p.titled:
 			w := t.r.src.word()
 			t.tell(twoTables, p.line, 0, "", t.r.src.holder(), fmt.Sprintf("%ss %d to %d", w, t.lay.first, t.until), t.r.row(line))
 			t.ended = true
+		case p.time == "" && p.words != "":
+			t.tell(anotherRun, p.line, 0, p.words)
 		case p.time == "":
 			t.tell(timeLacks, p.line, t.lay.time, "")
+		case p.words != "" && p.words == p.time:
+			t.tell(anotherRun, p.line, 0, p.words)
 		default:
 			t.tell(notTime, p.line, t.lay.time, p.time)
 		}
