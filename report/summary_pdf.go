@@ -34,16 +34,22 @@ func (d *doc) summary(rows []Row) {
 	d.title = h.overviewTitle()
 	d.page()
 	d.heading(h.overviewTitle(), 0, 20)
-	var n [4]int
+	var n, records [4]int
 	list := make([]slim, len(rows))
 	for i, r := range rows {
 		list[i] = slim{Row: r, calculated: true}
 		n[overall(r.Verdict)]++
+		if r.Measured != nil {
+			records[*r.Measured]++
+		}
 	}
 	list = listed(nil, list)
 	sentence := say("summary sentence", counted(len(rows), "products calculated"), tallied(n))
 	if len(h.NotCalculated) > 0 {
 		sentence += say("summary refused", len(h.NotCalculated))
+	}
+	if records != [4]int{} {
+		sentence += say("summary records", tallied(records))
 	}
 	d.para(sentence, style{size: 11, bold: true, after: 2})
 	if left := h.LeftOutWords(); left != "" {

@@ -583,6 +583,7 @@ var words = map[string]string{
 	"products calculated":     "%d products calculated",
 	"products calculated one": "1 product calculated",
 	"summary refused":         " %d could not be calculated.",
+	"summary records":         " By their records: %s.",
 	"summary list":            "Products, the tightest first",
 	"summary not":             "Not calculated",
 	"summary not note":        "These products of the plan were not calculated. The rows below say why; every other row was calculated.",

@@ -618,12 +618,14 @@ func finite(x float64) *float64 {
 	return &x
 }
 
-// enough compares a time held with a needed one: at least, unless the limit says more than. Both in s.
+// enough compares a time held with a needed one: at least, unless the limit says more than. Both in s. Times closer than sameS are equal, but for needs
+// that are themselves no longer than seconds, as those of a lethality at a high reference temperature may be.
 func (l *Limit) enough(held, need float64) bool {
+	same := sameS * min(1, need)
 	if l.CompareTime == MoreThan {
-		return held > need+sameS
+		return held > need+same
 	}
-	return held >= need-sameS
+	return held >= need-same
 }
 
 // within compares a time taken with an allowed one: at most, unless the limit says less than. Both in s.

@@ -144,22 +144,45 @@ func (r *runner) search(p *workbook.Product, now *report.Product, c *change, mov
 		return 0, false
 	}
 	_, good = bisect(bad, good, func(k int) bool { return meets(k, look) })
-	first := good
-	for ; good <= c.most; good++ { // what is named is confirmed by the run that counts
-		if meets(good, model.Options{}) {
-			break
+	every := false
+	confirmed := func(k int) bool { // what is named is confirmed by the run that counts
+		met := meets(k, model.Options{})
+		if met {
+			every = all
 		}
+		return met
 	}
-	if good > c.most {
-		return 0, false
+	if good, ok := gallop(good, c.most, confirmed); ok {
+		return good, every
 	}
-	every := all
-	if good == first { // a first look errs, mostly on the safe side
-		for good > 1 && meets(good-1, model.Options{}) {
-			good, every = good-1, all
+	return 0, false
+}
+
+// gallop finds, from a first guess on, the least number of steps at which something holds and with one less does not, in ever longer strides and
+// back; false if it holds nowhere up to most. With no steps it does not hold.
+func gallop(guess, most int, holds func(k int) bool) (n int, ok bool) {
+	if holds(guess) {
+		bad, good := 0, guess
+		for d := 1; good-d > 0; d *= 2 {
+			if !holds(good - d) {
+				bad = good - d
+				break
+			}
+			good -= d
 		}
+		_, good = bisect(bad, good, holds)
+		return good, true
 	}
-	return good, every
+	bad := guess
+	for d := 1; bad < most; d *= 2 {
+		k := min(bad+d, most)
+		if holds(k) {
+			_, good := bisect(bad, k, holds)
+			return good, true
+		}
+		bad = k
+	}
+	return 0, false
 }
 
 // bisect narrows the steps between one at which something does not hold and one at which it does, on whichever side, until they are

@@ -269,3 +269,20 @@ func TestLeverBesideLimitsThatNothingChanges(t *testing.T) {
 		})
 	}
 }
+
+// Where what is named has to be confirmed far from the first look, it is found in few runs, and it is the least.
+func TestGallop(t *testing.T) {
+	const most = 300
+	for _, c := range []struct{ guess, least, want int }{{1, 1, 1}, {10, 10, 10}, {10, 9, 9}, {10, 1, 1}, {200, 3, 3}, {10, 250, 250}, {10, 300, 300}, {10, 301, 0}, {300, 301, 0}} {
+		runs := 0
+		n, ok := gallop(c.guess, most, func(k int) bool {
+			if runs++; k < 1 || k > most {
+				t.Errorf("from %d: %d steps tried", c.guess, k)
+			}
+			return k >= c.least
+		})
+		if n != c.want || ok != (c.want > 0) || runs > 20 {
+			t.Errorf("from %d: %d %v after %d runs, want %d", c.guess, n, ok, runs, c.want)
+		}
+	}
+}

@@ -349,6 +349,12 @@ func (r *runner) measure(p *workbook.Product, out *report.Product, media []*medi
 	}
 	for i := range r.plan.Records {
 		rec := &r.plan.Records[i]
+		if !rec.Sound && slices.ContainsFunc(rec.Products, func(q *workbook.Product) bool { return q.Name == p.Name }) {
+			m := describe(rec)
+			m.Problems.Add(cell.Error{At: rec.At, Msg: fmt.Sprintf("The record %s was not read: its row has mistakes", rec.Name), Hint: "mend the cells that are named with it"})
+			out.Measured = append(out.Measured, *m)
+			continue
+		}
 		if rec.Sound && rec.Of.Food() && rec.Products[0].Name == p.Name {
 			out.Measured = append(out.Measured, *r.measured(rec, p, out, media))
 		}
