@@ -330,7 +330,8 @@ func TestTablesAndIntegral(t *testing.T) {
 
 // A needed time of microseconds, as a D at a high reference temperature makes it, is not met by nothing: at 30 °C 1e-14 of a minute at 121.1 °C is earned.
 func TestLethalityOfAMoment(t *testing.T) {
-	l := Limit{Kind: Lethality, ReferenceC: f(121.1), ZK: f(10), DS: f(1e-5), Logs: f(6)}
+	at := func(x float64) *float64 { return &x }
+	l := Limit{Kind: Lethality, ReferenceC: at(121.1), ZK: at(10), DS: at(1e-6), Logs: at(6)}
 	if g := one(t, l, record(t, "cook 0-60", "0:30 60:30")); g.Verdict != NotMet {
 		t.Errorf("%v, %v log reductions of 6", g.Verdict, *g.Value)
 	}
