@@ -387,27 +387,64 @@ func (s *search) combined(first []corner) []corner {
 	return first
 }
 
-// between moves the corner of each limit that is met there to places between the ends where that makes it clearly worse, and on from there. A
-// clock that starts at a temperature makes the worst start lie just above it, and what is below never starts it.
+// betweenRounds is how often places between the ends are looked for at most, each time from where the last ones led.
+const betweenRounds = 3
+
+// between moves the corner of each limit that is met there to places between the ends where that makes it clearly worse, and on from there: to
+// those that inner gives; to the last place at which the limit still counts, where farther on it does not, as where the food no longer gets as
+// warm as its clock starts; and to where the parabola through three places has its worst.
 func (s *search) between(worst []corner) error {
 	zero := make(corner, len(s.p.Spreads))
+	looks := []func(k int, c corner) []corner{func(k int, c corner) []corner {
+		var out []corner
+		for i := range c {
+			for _, v := range s.inner(i, s.at(zero)) {
+				out = append(out, c.with(i, v))
+			}
+		}
+		return out
+	}, s.bends, s.bends}
+	for range betweenRounds {
+		moved := false
+		for i, look := range looks {
+			if i == 1 {
+				on, err := s.edges(worst)
+				if err != nil {
+					return err
+				}
+				moved = moved || on
+			}
+			on, err := s.tryOut(worst, look)
+			if err != nil {
+				return err
+			}
+			moved = moved || on
+		}
+		if !moved {
+			return nil
+		}
+		if err := s.climb(worst); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// tryOut judges each limit that is met at its corner at the places that look gives, and moves the corner to one that is clearly worse.
+func (s *search) tryOut(worst []corner, look func(k int, c corner) []corner) (moved bool, err error) {
 	next := make([][]corner, len(worst))
 	var list []ask
 	for k, c := range worst {
-		if s.at(c)[k].Verdict != rules.Met {
-			continue
+		if s.at(c)[k].Verdict == rules.Met {
+			next[k] = look(k, c)
 		}
-		for i := range c {
-			for _, v := range s.inner(i, s.at(zero)) {
-				next[k] = append(next[k], c.with(i, v))
-				list = append(list, ask{c.with(i, v), k})
-			}
+		for _, d := range next[k] {
+			list = append(list, ask{d, k})
 		}
 	}
 	if err := s.need(list); err != nil {
-		return err
+		return false, err
 	}
-	moved := false
 	for k := range worst {
 		for _, c := range next[k] {
 			if a, b := &s.at(c)[k], &s.at(worst[k])[k]; rules.Worse(a, b) && apart(a, b) {
@@ -415,10 +452,120 @@ func (s *search) between(worst []corner) error {
 			}
 		}
 	}
-	if !moved {
+	return moved, nil
+}
+
+// stands are the places of a spread, in order, at which a limit was judged with everything else as at a corner.
+func (s *search) stands(k int, c corner, i int) []float64 {
+	var out []float64
+	for n := -parts; n <= parts; n++ {
+		if v := float64(n) / parts; s.knows(c.with(i, v), k) {
+			out = append(out, v)
+		}
+	}
+	return out
+}
+
+// edge is a part of a spread on one end of which a limit counts.
+type edge struct {
+	ask
+	spread  int
+	in, out float64
+}
+
+// edges moves the corner of each limit that is met there to the last places at which it counts.
+func (s *search) edges(worst []corner) (moved bool, err error) {
+	counts := func(a ask, i int, v float64) bool { return s.at(a.with(i, v))[a.limit].Verdict != rules.NotApplicable }
+	var found []edge
+	for k, c := range worst {
+		if s.at(c)[k].Verdict != rules.Met {
+			continue
+		}
+		a := ask{c, k}
+		for i := range c {
+			at := s.stands(k, c, i)
+			for j := 1; j < len(at); j++ {
+				switch u, v := at[j-1], at[j]; {
+				case counts(a, i, u) == counts(a, i, v):
+				case counts(a, i, u):
+					found = append(found, edge{a, i, u, v})
+				default:
+					found = append(found, edge{a, i, v, u})
+				}
+			}
+		}
+	}
+	for open := true; open; {
+		open = false
+		var list []ask
+		mids := make([]float64, len(found))
+		for n, e := range found {
+			mids[n] = math.Trunc((e.in+e.out)/2*parts) / parts
+			if mids[n] != e.in && mids[n] != e.out {
+				list, open = append(list, ask{e.with(e.spread, mids[n]), e.limit}), true
+			}
+		}
+		if err := s.need(list); err != nil {
+			return false, err
+		}
+		for n := range found {
+			switch e := &found[n]; {
+			case mids[n] == e.in || mids[n] == e.out:
+			case counts(e.ask, e.spread, mids[n]):
+				e.in = mids[n]
+			default:
+				e.out = mids[n]
+			}
+		}
+	}
+	for _, e := range found {
+		c := e.with(e.spread, e.in)
+		if a, b := &s.at(c)[e.limit], &s.at(worst[e.limit])[e.limit]; rules.Worse(a, b) && apart(a, b) {
+			worst[e.limit], moved = c, true
+		}
+	}
+	return moved, nil
+}
+
+// bends are the places between the ends of each spread at which the parabola through the margins at a corner and the places beside it has its least.
+func (s *search) bends(k int, c corner) []corner {
+	var out []corner
+	for i := range c {
+		at := s.stands(k, c, i)
+		j := slices.Index(at, c[i])
+		if j = max(1, min(j, len(at)-2)); len(at) < 3 {
+			continue
+		}
+		var y [3]float64
+		x, known := at[j-1:j+2], true
+		for n := range y {
+			m := marginOf(&s.at(c.with(i, x[n]))[k])
+			if known = known && m != nil; known {
+				y[n] = *m
+			}
+		}
+		first, second := (y[1]-y[0])/(x[1]-x[0]), (y[2]-y[1])/(x[2]-x[1])
+		if !known || !(second > first) {
+			continue
+		}
+		least := (x[0]+x[1])/2 - first*(x[2]-x[0])/2/(second-first)
+		least = math.Round(least*parts) / parts
+		if least > x[0] && least < x[2] && !s.knows(c.with(i, least), k) {
+			out = append(out, c.with(i, least))
+		}
+	}
+	return out
+}
+
+// marginOf is the margin of a finding in temperature, K, or, where it has none, in time, s; nil without either.
+func marginOf(f *rules.Finding) *float64 {
+	if f.Verdict == rules.NotApplicable {
 		return nil
 	}
-	return s.climb(worst)
+	if f.MarginK != nil {
+		return f.MarginK
+	}
+	return f.MarginS
 }
 
 // inner are places of a spread between its ends: half way to each, and of temperatures the quarters and those that bring the start just to

@@ -237,6 +237,48 @@ func TestWorstValueBetweenTheEnds(t *testing.T) {
 	}
 }
 
+// TestWorstAtAnEdgeAndInABend: the worst value may lie between the ends where no half tells it. A denser sphere cools later, up to where its centre does
+// not get as warm as the clock starts; and a lighter slab is hotter and cools faster, so that in between it is hottest at the end. At both ends and at
+// half the way these are met.
+func TestWorstAtAnEdgeAndInABend(t *testing.T) {
+	for _, c := range []struct {
+		products, food, steps, limit, spread string
+		least, most                          float64 // of the place found, in 64ths
+	}{
+		{"P,X,sphere,,64.2,F,9.3", "F,0.453,1030,3198,-3,invented",
+			"X,s1,cook,30,film,98.1,21.4\nX,s2,rest,16,film,20.6,14.4\nX,s3,hold hot,7,film,51.2,7\nX,s4,cool,208,film,2.3,19.4",
+			"cool,,55.8,29.3,40.720446715,crossing,less than", "P,density,5.1 %,0 %,invented", -60, -34},
+		{"P,X,slab,30.8,,F,7.8", "F,0.285,961,3022,-3,invented", "X,s1,cook,16,film,93.5,40.7\nX,s2,hold hot,34,film,62,15.5\nX,s3,cool,207,film,2.3,7.9",
+			"by the end,,,40.783632813,33.2,stage end: hold hot,", "P,specific heat,24.2 %,18.7 %,invented\nX/s3,medium temperature,1.3 °C,2 °C,invented", -60, -40},
+	} {
+		dir := t.TempDir()
+		for name, text := range map[string]string{
+			"Products": "Product,Process,Shape,Thickness (mm),Diameter (mm),Food,Start temperature (°C)\n" + c.products,
+			"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Freezing point (°C),Source\n" + c.food,
+			"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\n" + c.steps,
+			"Limits":   "Limit,Where,Applies to,Rule,Stage,From (°C),To (°C),Time (min),Clock starts,Compare\nL,centre,all," + c.limit,
+			"Spread":   "Applies to,Quantity,Minus,Plus,Basis\n" + c.spread,
+		} {
+			if err := os.WriteFile(filepath.Join(dir, name+".csv"), []byte(text+"\n"), 0o644); err != nil {
+				t.Fatal(err)
+			}
+		}
+		plan, err := workbook.Read(dir)
+		if err != nil || plan.Problems.Faults() > 0 {
+			t.Fatal(err, plan.Problems)
+		}
+		s := searchOf(t, &runner{plan: plan}, &plan.Products[0])
+		worst, err := s.corners()
+		if err != nil {
+			t.Fatal(err)
+		}
+		f, at := &s.at(worst[0])[0], worst[0][0]*64
+		if f.Verdict != rules.NotMet || at < c.least || at > c.most {
+			t.Errorf("%s: %v at %g/64", c.spread, f.Verdict, at)
+		}
+	}
+}
+
 // TestDrawnPiecesThatMiss: met at the worst place found is cannot tell where a drawn piece misses.
 func TestDrawnPiecesThatMiss(t *testing.T) {
 	met := rules.Finding{Verdict: rules.Met, Why: "It took 60 min."}
