@@ -40,7 +40,7 @@ type drive struct {
 // (own choice, held by TestKeptIsNearerToTheTruth).
 const slackKeptK, swingShare = 5e-4, 2e-4
 
-// thinFo is the Fourier number of a half axis from which on the faces of a food know of each other: nothing is kept then.
+// thinFo is the Fourier number of a half axis from which on the faces of a food know of each other: nothing is kept from then on.
 const thinFo = 0.04
 
 // settling lists the beginnings of steps at which swings are kept within bounds.
@@ -56,23 +56,20 @@ func (s *solver) settling(h *History) []settles {
 		for ; since > 0 && !s.goesOn(h, &e, since); since-- { // a step too short to go on
 		}
 		e.sinceS = h.Spans[since].StartS
-		s.drivesOf(h, &e, since, i)
-		if s.thin(e.alpha[1] * (e.untilS - e.sinceS)) {
+		e.alpha, _ = s.conducts(h)
+		if e.untilS = min(e.untilS, e.sinceS+s.thinS(e.alpha[1])); e.untilS <= e.startS {
 			continue
 		}
+		s.drivesOf(h, &e, since, i)
 		all = append(all, e)
 	}
 	return all
 }
 
-// thin tells whether heat that spreads for a time times α, m², crosses the food.
-func (s *solver) thin(spread float64) bool {
-	for _, r := range s.radii[:s.used] {
-		if spread > thinFo*r*r {
-			return true
-		}
-	}
-	return false
+// thinS is how long heat that spreads with α, m²/s, takes to cross the food, s.
+func (s *solver) thinS(alpha float64) float64 {
+	r := s.thinnest()
+	return thinFo * r * r / alpha
 }
 
 // goesOn tells whether the course before a step is long enough to be gone on with, and how: with which instants before it.
@@ -170,12 +167,16 @@ type settlingOf struct {
 	by    [][]float64 // temperatures of all nodes at the instants before, °C
 }
 
-// conducts gives the least and greatest thermal diffusivity, m²/s, and conductivity, W/(m·K), of the foods.
-func (s *solver) conducts() (alpha, k [2]float64) {
+// conducts gives the least and greatest thermal diffusivity, m²/s, and conductivity, W/(m·K), of the foods at the temperatures that occur.
+func (s *solver) conducts(h *History) (alpha, k [2]float64) {
+	low, high := s.product.StartC, s.product.StartC
+	for _, r := range h.hull {
+		low, high = min(low, r[0]), max(high, r[1])
+	}
 	alpha, k = [2]float64{math.Inf(1), 0}, [2]float64{math.Inf(1), 0}
 	for _, f := range s.product.Foods() {
-		for c := -20.0; c <= 140; c += 20 {
-			q := f.Props(c)
+		for n := range 9 {
+			q := f.Props(low + (high-low)*float64(n)/8)
 			one := s.options.ConductivityFactor * q.KWmK
 			k = [2]float64{min(k[0], one), max(k[1], one)}
 			one /= q.RhoKgM3 * q.CJkgK
@@ -194,7 +195,7 @@ const nodesMiss = 0.02
 // drivesOf works out what the faces drive in from the beginning of the step since to the end of what is kept in the step now.
 func (s *solver) drivesOf(h *History, e *settles, since, now int) {
 	of := settlingOf{s: s, h: h, since: since, now: now, by: make([][]float64, h.body.nodes.count())}
-	e.alpha, of.k = s.conducts()
+	_, of.k = s.conducts(h)
 	e.uneven = of.k[1] / of.k[0]
 	s.before(h, e, of.by)
 	for a := range s.used {
