@@ -60,6 +60,7 @@ type question struct {
 	need    float64 // required, in unit; NaN for none
 	warm    bool    // colder food would be less favourable
 	both    bool    // warmer food would be less favourable as well
+	faces   bool    // a moment at a surface may decide
 	steady  bool    // the error moves a whole course, so that the margin alone does not weigh against it
 	needs   bool    // a time that is needed, not one that is allowed
 	rises   bool    // a clock that starts at a crossing does so on the way up
@@ -265,6 +266,9 @@ func (v *view) candidates(s scope, q question) []candidate {
 	if v.errK > 0 && v.single() { // a warmer place may come back for a second period
 		picks = append(picks, v.pick(s.spots, q, tilt{errK: -v.errK})...)
 	}
+	if q.faces && !s.surfaceOnly { // a film that weakens lets a surface rise for a moment, which the scan may step over
+		picks = append(picks, v.faces(s.spots, q)...)
+	}
 	var cs []candidate
 	put := func(p model.Place, surface bool) {
 		path := v.path(p)
@@ -319,6 +323,23 @@ func (v *view) candidates(s scope, q question) []candidate {
 		put(v.h.PlaceAt(x), s.surfaceOnly)
 	}
 	return cs
+}
+
+// mostFaces is how many spots of the surface are looked at closely, each for itself.
+const mostFaces = 8
+
+// faces are the spots of the surface, the worst of them where they are many.
+func (v *view) faces(spots []int, q question) []int {
+	var on []int
+	for _, i := range spots {
+		if v.c.spots[i].Surface {
+			on = append(on, i)
+		}
+	}
+	if len(on) > mostFaces {
+		return v.pick(on, q, tilt{})
+	}
+	return on
 }
 
 // clocked tells whether the limit's clock starts at a crossing, so that it may not apply to some places.

@@ -8,7 +8,7 @@ var Falling = &Kind{Name: "falling", Unit: "K", Needs: [][]string{{"Stage"}, {"A
 
 func judgeFalling(v *view) Finding {
 	l := v.l
-	q := question{unit: "K", need: *l.AllowanceK, warm: true, both: true, steady: true}
+	q := question{unit: "K", need: *l.AllowanceK, warm: true, both: true, steady: true, faces: true}
 	q.room = func(p path) float64 {
 		rise, _, _ := v.rise(p)
 		return *l.AllowanceK - rise
