@@ -232,6 +232,38 @@ func (m *Measured) compared(h *Head) []string {
 	return out
 }
 
+// differences is the strip below the chart of a record: by how much it was warmer than the prediction, over the same time; nil without one.
+func (h *Head) differences(p *Product, d *deciding) *chart {
+	if p.predicted == nil {
+		return nil
+	}
+	hist := d.history
+	axis := newTimeAxis(hist, d.part())
+	times := p.aroundGaps(chartTimes(hist))
+	read := make([]float64, len(times))
+	hist.Course(d.place, times, read)
+	l := line{name: say("line difference")}
+	lo, hi := 0.0, 0.0
+	for i, c := range predictedAt(p.predicted, times) {
+		y := (read[i] - c) * h.perK()
+		if p.inGap(times[i]) {
+			y = math.NaN()
+		}
+		if !math.IsNaN(y) {
+			lo, hi = min(lo, y), max(hi, y)
+		}
+		l.x, l.y = append(l.x, axis.at(times[i])), append(l.y, y)
+	}
+	f := &chart{xName: axis.name, yName: say("axis difference", h.degree()), x1: axis.end(), xTicks: axis.ticks, size: small, ends: 96, lines: []line{l}}
+	f.y0, f.y1 = lo-0.1*(hi-lo)-0.2, hi+0.35*(hi-lo)+0.6 // for the strip with the names of the steps
+	f.yTicks = ticksTo(f.y0, hi+0.05*(hi-lo)+0.1, []float64{0.5, 1, 2, 5, 10, 20, 25, 50, 100}, 5)
+	f.levels = []level{{words: []string{"0 " + h.degree(), say("as predicted")}, from: 0, to: axis.end()}}
+	for _, sp := range hist.Spans {
+		f.bands = append(f.bands, band{name: sp.Step.Name, from: axis.at(sp.StartS), to: axis.at(sp.EndS)})
+	}
+	return f
+}
+
 // records are the measured part of a report.
 func (x *sheet) records() {
 	d := x.doc
@@ -252,10 +284,20 @@ func (x *sheet) records() {
 		}
 		q := m.asProduct(x.p)
 		y := &sheet{doc: d, p: q, decides: q.decides(), order: q.worstFirst()}
-		d.need(92)
+		tall := 92.0
+		if m.Against != nil { // with the strip below
+			tall += 44
+		}
+		d.need(tall)
 		x.head.history(q, y.decides, small, 96, true).draw(d.canvas(d.left, d.y, frameWide, 88))
 		d.y += 89
 		d.text(y.slowestSentence())
+		if f := x.head.differences(q, y.decides); f != nil {
+			d.need(44)
+			f.draw(d.canvas(d.left, d.y, frameWide, 40))
+			d.y += 41
+			d.text(say("against strip"))
+		}
 		for _, s := range m.compared(x.head) {
 			d.text(s)
 		}

@@ -3,6 +3,7 @@ package report
 import (
 	"bytes"
 	"encoding/json"
+	"math"
 	"strings"
 	"testing"
 
@@ -102,6 +103,41 @@ func TestRecordsStandApart(t *testing.T) {
 	var pdf bytes.Buffer
 	if err := WriteProductPDF(&pdf, trayHead(), p); err != nil {
 		t.Fatal(err)
+	}
+}
+
+// TestDifferences: the strip below a record shows record minus prediction, in what the report shows, and breaks in gaps.
+func TestDifferences(t *testing.T) {
+	for _, fahrenheit := range []bool{false, true} {
+		p := recordedRoast(t)
+		q := p.Measured[0].asProduct(p)
+		h := trayHead()
+		h.Fahrenheit = fahrenheit
+		f := h.differences(q, q.decides())
+		l := f.lines[0]
+		// the record goes straight from 8 to 40 °C in the first of two halves, the prediction from 8 to 76.5 °C in both
+		seen, half := 0, f.x1/2
+		for i, x := range l.x {
+			switch y := l.y[i]; {
+			case x > half && x < f.x1:
+				if !math.IsNaN(y) {
+					t.Errorf("%g at %g of %g, in a gap", y, x, f.x1)
+				}
+			case x <= half:
+				if want := (40 - 8 - 68.5/2) * x / half * h.perK(); math.Abs(y-want) > 1e-6 {
+					t.Errorf("%g at %g of %g, want %g", y, x, f.x1, want)
+				}
+				seen++
+			}
+		}
+		if seen < 10 {
+			t.Errorf("%d places", seen)
+		}
+	}
+	p := recordedRoast(t)
+	p.Measured[0].Against = nil
+	if q := p.Measured[0].asProduct(p); trayHead().differences(q, q.decides()) != nil {
+		t.Error("differences from no prediction")
 	}
 }
 
