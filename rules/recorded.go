@@ -32,6 +32,10 @@ func FindRecorded(limits []Limit, r Recorded) ([]Finding, error) {
 		}
 		f := d.find(l)
 		f.Limit = l
+		if f.MarginK != nil && (f.Verdict != NotMet || *f.MarginK < 0) { // all readings may be off by so much to the unfavourable side
+			k := *f.MarginK - r.Recording.ErrorK
+			f.MarginK = &k
+		}
 		out = append(out, f)
 	}
 	return out, nil

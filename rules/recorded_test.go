@@ -286,6 +286,29 @@ func TestNoNumberWithoutBounds(t *testing.T) {
 	}
 }
 
+// TestRoomOfARecord: the room in K of what is judged by readings is that of readings which are all off to the unfavourable side; what is missed for
+// another reason than a temperature has none still.
+func TestRoomOfARecord(t *testing.T) {
+	room := func(l Limit, errorK float64) Finding {
+		r := logged(t, "store 0-60", "0:4 10:4 20:5 30:5.5 40:5 50:4 60:4")
+		r.ErrorK = errorK
+		return found(t, l, r)
+	}
+	below := Limit{Kind: StayBelow, Stages: []*model.Stage{model.Store}, ToC: c(8)}
+	for _, x := range []struct {
+		errorK, roomK float64
+		verdict       Verdict
+	}{{0, 2.5, Met}, {0.5, 2, Met}, {3, -0.5, CannotTell}} {
+		if f := room(below, x.errorK); f.Verdict != x.verdict || math.Abs(*f.MarginK-x.roomK) > 1e-9 {
+			t.Errorf("readings off by %g K: %v, room %g K, want %v, %g", x.errorK, f.Verdict, *f.MarginK, x.verdict, x.roomK)
+		}
+	}
+	below.ToC = c(3)
+	if f := room(below, 0.5); f.Verdict != NotMet || math.Abs(*f.MarginK+3) > 1e-9 {
+		t.Errorf("%v, %g K", f.Verdict, *f.MarginK)
+	}
+}
+
 // TestGapWithoutSurroundings bounds a gap by what is known of the medium and, where the food may still hold heat, by what was read before.
 func TestGapWithoutSurroundings(t *testing.T) {
 	for _, x := range []struct {
