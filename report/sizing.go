@@ -177,9 +177,16 @@ func (s *Sizing) limits() []sizedLimit {
 
 // headline is the answer in a sentence.
 func (s *Sizing) headline() string {
-	kind, every := say("size smallest"), say("size every")
+	end, every := "smallest", say("size every")
 	if s.Most {
-		kind = say("size largest")
+		end = "largest"
+	}
+	kind := say("size " + end)
+	for _, of := range []string{"temperature", "duration", "until"} {
+		if strings.HasPrefix(s.What, of) || strings.Contains(s.What, " "+of) {
+			kind = say("size " + end + " " + of)
+			break
+		}
 	}
 	if len(s.Fixed) > 0 {
 		every = say("size every other")

@@ -147,9 +147,13 @@ func (t *taker) clocks() bool {
 	case t.groups == 3 || t.wraps():
 		kind = ofDay
 	case t.groups == 2:
-		s := int(t.secs[0]) / 60
+		s, sample, line := int(t.secs[0])/60, t.sample, t.firstAt
+		if i := slices.IndexFunc(t.secs, func(x float64) bool { return x > 0 }); s == 0 && i >= 0 { // 0:00 says nothing
+			s, line = int(t.secs[i])/60, t.lines[i]
+			sample = fmt.Sprintf("%d:%02d", s/60, s%60)
+		}
 		day, span := unit.Lasting(float64(60*s), nil), unit.Lasting(float64(s), nil)
-		t.r.ask(eitherClock, setTime, "", quote(t.sample), t.r.row(t.firstAt), day, span, name)
+		t.r.ask(eitherClock, setTime, "", quote(sample), t.r.row(line), day, span, name)
 		return false
 	}
 	switch kind {
