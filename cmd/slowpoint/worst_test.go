@@ -425,6 +425,27 @@ func TestShareAgainstTheLinearOne(t *testing.T) {
 	}
 }
 
+// A drawn piece for which nobody can tell has not met.
+func TestAnOpenPieceHasNotMet(t *testing.T) {
+	r, p := wall()
+	r.plan.Limits = append(r.plan.Limits, rules.Limit{Name: "Lid", Kind: rules.Stated, Applies: rules.Applies{All: true}})
+	p.Spreads = []workbook.Spread{vary("start temperature", -1, 2, 3, false)}
+	r.options = &checkOptions{samples: 20, seed: 3}
+	d, err := r.judged(p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i := range d.Worst {
+		if w := &d.Worst[i]; w.Limit.Name == "Lid" {
+			if w.Share == nil || w.Share.Pieces != 20 || w.Share.Met != 0 {
+				t.Errorf("%+v", w.Share)
+			}
+			return
+		}
+	}
+	t.Error("the question was not judged")
+}
+
 // The interval of 81 of 263 is that of R. G. Newcombe 1998, Stat Med 17:857, table I (from memory): 0.2553 to 0.3662.
 func TestWilson(t *testing.T) {
 	if low, high := wilson(81, 263); math.Abs(low-0.2553) > 5e-5 || math.Abs(high-0.3662) > 5e-5 {
