@@ -574,6 +574,10 @@ func (r *reader) headUnits(l *layout, line int32, names *kept) bool {
 		return true
 	}
 	t := titleOf(names.word(l.temp))
+	if hasWord(t.raw, moistWords) {
+		r.problems.Add(ofMoisture.problem(r.set.Cells[setTemp], cell.Fault, setTemp, r.set.Temperature, t.raw))
+		return false
+	}
 	if s := scaleOf(t.unit); s != nil && !r.agree(l, s, line) {
 		return false
 	}
@@ -728,9 +732,10 @@ func (l *layout) heading(col int) string {
 
 // timeWords and tempWords are how headings of times and of temperatures begin, in small letters.
 var (
-	timeWords = []string{"time", "date", "stamp", "elapsed", "clock", "zeit", "datum", "uhr", "hora", "fecha", "heure", "temps", "tempo", "data", "ora", "tid", "čas", "czas", "aika", "ώρα", "ημερ"}
-	tempWords = []string{"temp", "probe", "core", "kern", "sensor", "channel", "sonde", "sonda", "fühler", "product", "meat", "air", "oven", "teplota", "θερμ", "lämpö"}
-	notTemp   = []string{"humid", "rh", "%", "dew", "feuchte", "tau", "punto", "point", "volt", "batt", "press"}
+	timeWords  = []string{"time", "date", "stamp", "elapsed", "clock", "zeit", "datum", "uhr", "hora", "fecha", "heure", "temps", "tempo", "data", "ora", "tid", "čas", "czas", "aika", "ώρα", "ημερ"}
+	tempWords  = []string{"temp", "probe", "core", "kern", "sensor", "channel", "sonde", "sonda", "fühler", "product", "meat", "air", "oven", "teplota", "θερμ", "lämpö"}
+	moistWords = []string{"dew", "taupunkt", "humid", "feuchte"}
+	notTemp    = []string{"humid", "rh", "%", "dew", "feuchte", "tau", "punto", "point", "volt", "batt", "press"}
 )
 
 func hasWord(s string, list []string) bool {

@@ -84,6 +84,7 @@ var (
 	aboveReading = saying{"stands between the headings and the readings and is not read", ""}
 
 	// units
+	ofMoisture     = saying{"is headed {1} in the file; a dew point or a humidity is no temperature of the food or of what surrounds it", "choose the column of the probe"}
 	noScale        = saying{"has no unit, and neither has its heading in the file{1}", "write the unit behind it, as {2} (°C), {2} (°F) or {2} (K)"}
 	otherScale     = saying{"says {1}, but {2} says {3}", "find out which counts, and correct Temperature column"}
 	noTick         = saying{"holds numbers without a unit{1}", "write the unit behind it: {2} (s), {2} (min), {2} (h), {2} (d) or {2} (serial)"}
