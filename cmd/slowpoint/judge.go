@@ -256,8 +256,11 @@ func (r *runner) judgedAlone(rec *workbook.Record, p *workbook.Product) (*report
 	out := &report.Product{Product: p.Product, Steps: p.Steps, Family: p.Family, RecipeVersion: p.RecipeVersion, Batch: p.Batch, Process: p.Process,
 		Note: p.Note, History: m.History, Judgement: m.Judgement, Readings: rec.Readings()}
 	for i := range out.Readings {
+		at := &out.Readings[i].At
 		if f := flagOf(out.Readings[i].Column); f != "" {
-			out.Readings[i].At = cell.Ref{Sheet: "--" + f}
+			*at = cell.Ref{Sheet: "--" + f}
+		} else if at.Sheet == "Records" { // named after the file that was given
+			*at = cell.Ref{Sheet: rec.File}
 		}
 	}
 	out.Samples = out.History.Sample(r.head.EveryS)
