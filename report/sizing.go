@@ -175,19 +175,25 @@ func (s *Sizing) limits() []sizedLimit {
 	return out
 }
 
+// end is what is asked for: the largest size, the shortest duration, the coldest temperature and so on.
+func (s *Sizing) end() string {
+	of := func(what string) bool { return strings.HasPrefix(s.What, what) || strings.Contains(s.What, " "+what) }
+	keys := [2]string{"size smallest", "size largest"}
+	switch {
+	case of("temperature"), of("until"):
+		keys = [2]string{"size coldest", "size warmest"}
+	case of("duration"):
+		keys = [2]string{"size shortest", "size longest"}
+	}
+	if s.Most {
+		return say(keys[1])
+	}
+	return say(keys[0])
+}
+
 // headline is the answer in a sentence.
 func (s *Sizing) headline() string {
-	end, every := "smallest", say("size every")
-	if s.Most {
-		end = "largest"
-	}
-	kind := say("size " + end)
-	for _, of := range []string{"temperature", "duration", "until"} {
-		if strings.HasPrefix(s.What, of) || strings.Contains(s.What, " "+of) {
-			kind = say("size " + end + " " + of)
-			break
-		}
-	}
+	kind, every := s.end(), say("size every")
 	if len(s.Fixed) > 0 {
 		every = say("size every other")
 	}
