@@ -51,7 +51,7 @@ func (s *solver) settling(h *History) []settles {
 	var all []settles
 	for i := range h.Spans {
 		sp := &h.Spans[i]
-		e := settles{startS: sp.StartS, untilS: min(sp.StartS+s.settle, sp.EndS)} // as long as the stated error leaves out
+		e := settles{startS: sp.StartS, untilS: min(sp.StartS+s.keptS(), sp.EndS)}
 		since := i
 		for ; since > 0 && !s.goesOn(h, &e, since); since-- { // a step too short to go on
 		}
@@ -64,6 +64,14 @@ func (s *solver) settling(h *History) []settles {
 		all = append(all, e)
 	}
 	return all
+}
+
+// keptS is how long temperatures are kept after a change: as long as the stated error leaves out, but not where more was asked to be left out.
+func (s *solver) keptS() float64 {
+	if s.options.ErrorFromS > 0 {
+		return min(s.settle, settleS)
+	}
+	return s.settle
 }
 
 // thinS is how long heat that spreads with α, m²/s, takes to cross the food, s.

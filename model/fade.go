@@ -60,3 +60,15 @@ func (d *fades) at(i int, axes *[3]*axis, steps *[3]*axisStep, tau float64) (lef
 	}
 	return left
 }
+
+// on gives what is left of each axis at an instant, as at does where that is kept; kept goes on to it, and e holds what is left elsewhere.
+func (d *fades) on(kept *int, t float64, axes *[3]*axis, steps *[3]*axisStep, tau float64, e *[3][maxDegrees]float64) (left [3][]float64) {
+	var ok bool
+	if *kept, ok = d.find(*kept, t); ok {
+		return d.at(*kept, axes, steps, tau)
+	}
+	for a := range left {
+		left[a] = e[a][:decays(steps[a].rate, tau, e[a][:axes[a].n])]
+	}
+	return left
+}

@@ -549,15 +549,7 @@ func (f *tensor) course(x coord, times, out []float64) {
 		for g := range st.groups {
 			sum += lin[0][g]*(sg.level[g]+sg.slope[g]*tau) - lin[1][g]*sg.slope[g]
 		}
-		var left [3][]float64
-		var ok bool
-		if kept, ok = f.fades.find(kept, t); ok {
-			left = f.fades.at(kept, &f.axes, &st.ax, tau)
-		} else {
-			for a := range left {
-				left[a] = e[a][:decays(st.ax[a].rate, tau, e[a][:f.axes[a].n])]
-			}
-		}
+		left := f.fades.on(&kept, t, &f.axes, &st.ax, tau, &e)
 		extra := 1.0
 		if st.extra > 0 {
 			extra = math.Exp(-st.extra * tau)

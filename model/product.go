@@ -142,15 +142,7 @@ func (f *product) course(x coord, times, out []float64) {
 			}
 		}
 		tau := min(max(t-st.t0, 0), st.t1-st.t0)
-		var left [3][]float64
-		var ok bool
-		if kept, ok = f.fades.find(kept, t); ok {
-			left = f.fades.at(kept, &f.axes, &st.ax, tau)
-		} else {
-			for a := range left {
-				left[a] = e[a][:decays(st.ax[a].rate, tau, e[a][:f.axes[a].n])]
-			}
-		}
+		left := f.fades.on(&kept, t, &f.axes, &st.ax, tau, &e)
 		for a := range left {
 			for i, x := range left[a] {
 				e[a][i] = x * v[a][i]
