@@ -126,7 +126,7 @@ func (b *uLaw) sums(u float64) (g, h float64) {
 func (b *uLaw) mean(u, d float64) (h, byU, byD float64) {
 	if d < math.Abs(u) {
 		r, x := b.row(u)
-		if y := math.Abs(d * r.per); x <= 1 && y-x <= 0.5 && x+y <= 1.5 { // all in one row
+		if y := math.Abs(d * r.per); y <= x && x+y <= 1 { // all in one row
 			c := &r.h
 			y2 := y * y * (1. / 3)
 			bend := c[2] + 3*c[3]*x

@@ -30,10 +30,16 @@ func TestLawIsTheSameBothWays(t *testing.T) {
 // and its slopes are those of the mean.
 func TestMeanHeatContent(t *testing.T) {
 	b := newLaw(freezingFood(), 1).byU
-	for _, c := range [][2]float64{{0, 0.5}, {0, 1e-3}, {-0.2, 0.5}, {0.3, 0.5}, {-3, 0.1}, {-3, 2.9}, {-40, 3}, {12, 0.4}, {12, 11}, {-0.004, 0.003}} {
+	cases := [][2]float64{{0, 0.5}, {0, 1e-3}, {-0.2, 0.5}, {0.3, 0.5}, {-3, 0.1}, {-3, 0.8}, {-3, 1.5}, {-3, 2.9}, {-0.1, 0.02}, {-40, 3}, {12, 0.4}, {12, 11}, {-0.004, 0.003}}
+	for u := -3.4; u < -2.6; u += 0.07 {
+		for d := 0.1; d < 0.5; d += 0.06 {
+			cases = append(cases, [2]float64{u, d}, [2]float64{-u, d})
+		}
+	}
+	for _, c := range cases {
 		u, d := c[0], c[1]
 		h, byU, byD := b.mean(u, d)
-		const n = 200000
+		const n = 20000
 		sum := 0.0
 		for i := range n {
 			_, x := b.sums(u - d + 2*d*(float64(i)+0.5)/n)

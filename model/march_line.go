@@ -405,9 +405,16 @@ func (m *lineMarch) factor(y []float64) {
 	n := len(y)
 	low, diag, up := m.low[:n], m.diag[:n], m.up[:n]
 	mid := (n - 1) / 2
-	d, p := 1/diag[0], y[0] // of the row before, from either end
-	e, q := 1/diag[n-1], y[n-1]
-	diag[0], diag[n-1] = d, e
+	d, p := 0.0, 0.0 // of the row before, from either end
+	if mid > 0 {
+		d, p = 1/diag[0], y[0]
+		diag[0] = d
+	}
+	e, q := 0.0, 0.0
+	if n > 1 {
+		e, q = 1/diag[n-1], y[n-1]
+		diag[n-1] = e
+	}
 	j := n - 2
 	if n%2 == 0 && j > mid {
 		u := up[j] * e
@@ -423,21 +430,20 @@ func (m *lineMarch) factor(y []float64) {
 		up[j], diag[j], y[j] = u, e, q
 		j--
 	}
+	pivot := diag[mid]
+	if mid > 0 {
+		l := low[mid] * d
+		pivot -= l * up[mid-1]
+		y[mid] -= l * p
+		low[mid] = l
+	}
 	if n > 1 {
 		u := up[mid] * e
-		pivot := diag[mid] - u*low[mid+1]
+		pivot -= u * low[mid+1]
 		y[mid] -= u * q
 		up[mid] = u
-		if mid > 0 {
-			l := low[mid] * d
-			pivot -= l * up[mid-1]
-			y[mid] -= l * p
-			low[mid] = l
-		} else { // its own row came first
-			pivot = 1/d - u*low[mid+1]
-		}
-		diag[mid] = 1 / pivot
 	}
+	diag[mid] = 1 / pivot
 	m.outwards(y)
 }
 
@@ -579,7 +585,7 @@ func (m *lineMarch) keep(k *track, t float64) {
 }
 
 // temperatures fills c with the temperatures at u and slope with what rate, W/m³, makes of them in a second, tau s into the step; held faces go as
-// their media do.
+// their media do. How heat contents go with u is that of the last look, which was at u or within what Newton's method leaves of it.
 func (m *lineMarch) temperatures(u, rate, c, slope, uRate []float64, tau float64) {
 	n := len(c)
 	for i := range c {

@@ -134,15 +134,7 @@ func runsOf(s *report.Sizing) string {
 func BenchmarkSizeMarched(b *testing.B) {
 	r, p := marchedWall()
 	p.Spreads = []workbook.Spread{vary("thickness", -1, 0.001, 0.003, false), vary("film coefficient", 1, 0.25, 0.2, true)}
-	d, err := r.dialOf(p, &sizeOptions{})
-	if err != nil {
-		b.Fatal(err)
-	}
-	for b.Loop() {
-		if s := r.size(p, d, r.judges(p), spreadBasis, 1); s.Answer == nil || s.Next == nil {
-			b.Fatal("no answer")
-		}
-	}
+	benchSize(b, r, p, spreadBasis)
 }
 
 // BenchmarkSizeSpread is the search of BenchmarkSize at the unfavourable ends of two, four and six quantities.
@@ -153,15 +145,7 @@ func BenchmarkSizeSpread(b *testing.B) {
 		b.Run(fmt.Sprint(n), func(b *testing.B) {
 			r, p := benchSlab()
 			p.Spreads = all[:n]
-			d, err := r.dialOf(p, &sizeOptions{})
-			if err != nil {
-				b.Fatal(err)
-			}
-			for b.Loop() {
-				if s := r.size(p, d, r.judges(p), spreadBasis, 1); s.Answer == nil || s.Next == nil {
-					b.Fatal("no answer")
-				}
-			}
+			benchSize(b, r, p, spreadBasis)
 		})
 	}
 }

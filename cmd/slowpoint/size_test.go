@@ -343,12 +343,17 @@ func TestSizeCommand(t *testing.T) {
 // BenchmarkSize is one search for the largest thickness of a linear slab through five steps under six limits.
 func BenchmarkSize(b *testing.B) {
 	r, p := benchSlab()
+	benchSize(b, r, p, nominalBasis)
+}
+
+// benchSize searches the largest thickness of a product over and over.
+func benchSize(b *testing.B, r *runner, p *workbook.Product, basis string) {
 	d, err := r.dialOf(p, &sizeOptions{})
 	if err != nil {
 		b.Fatal(err)
 	}
 	for b.Loop() {
-		if s := r.size(p, d, r.judges(p), nominalBasis, 1); s.Answer == nil || s.Next == nil {
+		if s := r.size(p, d, r.judges(p), basis, 1); s.Answer == nil || s.Next == nil {
 			b.Fatal("no answer")
 		}
 	}

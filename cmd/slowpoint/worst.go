@@ -394,27 +394,11 @@ const betweenRounds = 3
 // those that inner gives; to the last place at which the limit still counts, where farther on it does not, as where the food no longer gets as
 // warm as its clock starts; and to where the parabola through three places has its worst.
 func (s *search) between(worst []corner) error {
-	zero := make(corner, len(s.p.Spreads))
-	looks := []func(k int, c corner) []corner{func(k int, c corner) []corner {
-		var out []corner
-		for i := range c {
-			for _, v := range s.inner(i, s.at(zero)) {
-				out = append(out, c.with(i, v))
-			}
-		}
-		return out
-	}, s.bends, s.bends}
+	looks := []func([]corner) (bool, error){s.halves, s.edges, s.bent, s.bent}
 	for range betweenRounds {
 		moved := false
-		for i, look := range looks {
-			if i == 1 {
-				on, err := s.edges(worst)
-				if err != nil {
-					return err
-				}
-				moved = moved || on
-			}
-			on, err := s.tryOut(worst, look)
+		for _, look := range looks {
+			on, err := look(worst)
 			if err != nil {
 				return err
 			}
@@ -429,6 +413,23 @@ func (s *search) between(worst []corner) error {
 	}
 	return nil
 }
+
+// halves tries what inner gives of each spread.
+func (s *search) halves(worst []corner) (moved bool, err error) {
+	typed := s.at(make(corner, len(s.p.Spreads)))
+	return s.tryOut(worst, func(_ int, c corner) []corner {
+		var out []corner
+		for i := range c {
+			for _, v := range s.inner(i, typed) {
+				out = append(out, c.with(i, v))
+			}
+		}
+		return out
+	})
+}
+
+// bent tries what bends gives.
+func (s *search) bent(worst []corner) (moved bool, err error) { return s.tryOut(worst, s.bends) }
 
 // tryOut judges each limit that is met at its corner at the places that look gives, and moves the corner to one that is clearly worse.
 func (s *search) tryOut(worst []corner, look func(k int, c corner) []corner) (moved bool, err error) {

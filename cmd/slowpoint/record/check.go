@@ -86,7 +86,7 @@ func (t *taker) partBetween(a, b int32) int32 {
 	return 0
 }
 
-// leastLeapK is how far readings lie apart at least that leap, K.
+// leastLeapK is how far readings lie apart at least that leap, K (own choice).
 const leastLeapK = 1.0
 
 // leaps tells whether reading i lies further from the one before than those beside ever move.
