@@ -124,6 +124,9 @@ func TestPublishedSpecificHeats(t *testing.T) {
 		}
 	}
 	t.Logf("%d foods: rms %.4f, worst %.4f kJ/(kg·K)", n, math.Sqrt(sum/float64(n)), worst)
+	if n < 27 {
+		t.Errorf("%d foods, want 27 or more", n)
+	}
 	if rms := math.Sqrt(sum / float64(n)); rms > 0.004 {
 		t.Errorf("%d foods: rms %.4f kJ/(kg·K), want at most 0.004", n, rms)
 	}
