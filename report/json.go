@@ -167,6 +167,7 @@ type (
 		Correction json.RawMessage `json:"correction_K"`
 		Missing    int             `json:"missing"`
 		Doubtful   int             `json:"doubtful"`
+		Unseen     string          `json:"unnoticed,omitempty"`
 		Gaps       json.RawMessage `json:"gaps_s"`
 		Before     int             `json:"left_out_before"`
 		After      int             `json:"left_out_after"`
@@ -614,7 +615,7 @@ func recordsIn(ms []Measured) []recordJSON {
 		m := &ms[i]
 		one := recordJSON{Record: m.Name, At: m.At.String(), What: m.What, File: m.File, SHA256: m.SHA256, Sheet: m.Sheet, Column: m.Column, Unit: m.Unit,
 			Begins: m.Begins, Verdict: overall(m.verdict()).String(), Readings: m.Readings, Step: exactNumber(&m.StepS), Resolution: exactNumber(&m.ResolutionK),
-			Accuracy: exactNumber(m.AccuracyK), Correction: exactNumber(&m.CorrectionK), Missing: m.Missing, Doubtful: m.Doubtful, Before: m.Before, After: m.After,
+			Accuracy: exactNumber(m.AccuracyK), Correction: exactNumber(&m.CorrectionK), Missing: m.Missing, Doubtful: m.Doubtful, Unseen: m.unseen(), Before: m.Before, After: m.After,
 			Findings: findingsOf(m.Judgement.Findings), Problems: problemsOf(m.Problems)}
 		gaps := []byte{'['}
 		for k, g := range m.Gaps {

@@ -30,6 +30,7 @@ type Measured struct {
 	Missing, Doubtful  int
 	Gaps               [][2]float64 // s from the start of the chain
 	Before, After      int          // readings outside the chain, which were left out
+	Unseen             Unseen       // why a probe that left the food slowly, and stayed out, would not be told by its readings
 	About              []string     // lines above the table of the file
 	Echo               []EchoRow
 	History            *model.History // nil where the record could not be used
@@ -37,6 +38,14 @@ type Measured struct {
 	Against            *Against // the prediction beside it; nil if there is none
 	Problems           cell.Errors
 }
+
+// Unseen is why readings cannot tell a probe that left the food slowly from the food; its zero says that they can, or that it does not matter.
+type Unseen int
+
+const (
+	Undescribed Unseen = iota + 1 // nobody knows how fast the food can be
+	Quick                         // it can be as fast as a probe
+)
 
 // EchoRow is a row of the file as typed and as understood.
 type EchoRow struct {
@@ -157,6 +166,7 @@ func (m *Measured) facts(h *Head) [][2]string {
 		{say("record begins"), m.Begins},
 		{say("record readings"), say("record count", m.Readings, duration(m.StepS, nearest), h.difference(m.ResolutionK, nearest))},
 		{say("record lacking"), lacking},
+		{say("record unseen"), m.unseen()},
 		{say("record gaps"), strings.Join(gaps, "; ")},
 		{say("record left"), left},
 		{say("record sensor"), m.Sensor},
@@ -165,6 +175,17 @@ func (m *Measured) facts(h *Head) [][2]string {
 		{say("record accuracy"), accuracy},
 		{say("key note"), m.Note},
 	}
+}
+
+// unseen says why the curve has to be looked at; "" where it need not be for that.
+func (m *Measured) unseen() string {
+	switch m.Unseen {
+	case Undescribed:
+		return say("record unseen undescribed")
+	case Quick:
+		return say("record unseen quick")
+	}
+	return ""
 }
 
 // verdictOf is the verdict of a record with the limit that settles it, in a sentence.

@@ -279,3 +279,47 @@ func TestDoubtfulLeftOut(t *testing.T) {
 		})
 	}
 }
+
+// TestUnnoticed: the report of a record says where a probe that left the food slowly would not be told from the food: where the plan does not describe
+// it, or where it can be as fast as a probe; not of a surface, which may do what it likes, nor of food that is slower.
+func TestUnnoticed(t *testing.T) {
+	dir := t.TempDir()
+	whole, bare := leapPlan(t, dir)
+	writePlan(t, whole, map[string]string{"Records": "Record,Product,File,Time column,Temperature column,What it measured,Starts at,Accuracy (°C difference)\n" +
+		"tray,Hot tray,core.csv,Elapsed,Core,slowest point,chill,0.2\nslice,Hot slice,core.csv,Elapsed,Core,slowest point,chill,0.2\ntop,Hot tray,core.csv,Elapsed,Core,surface,chill,0.2\n"})
+	c := centreOf(t, 0.04, 85, 1, 10, 60, 28800)
+	leapFile(t, filepath.Join(whole, "core.csv"), 60, 1, c)
+	leapFile(t, filepath.Join(bare, "core.csv"), 60, 1, c)
+	to := filepath.Join(dir, "out")
+	got := map[string]string{}
+	take := func(args ...string) {
+		var said, errs bytes.Buffer
+		if code := run(append(args, "--no-pdf", "--date", "2026-01-31", "--out", to), nil, &said, &errs); code > 1 {
+			t.Fatalf("exit %d: %s", code, errs.String())
+		}
+		data, err := os.ReadFile(filepath.Join(to, "results.json"))
+		if err != nil {
+			t.Fatal(err)
+		}
+		var all struct {
+			Products []struct {
+				Records []struct{ Record, Unnoticed string }
+			}
+		}
+		if err := json.Unmarshal(data, &all); err != nil {
+			t.Fatal(err)
+		}
+		for _, p := range all.Products {
+			for _, r := range p.Records {
+				got[r.Record] = r.Unnoticed
+			}
+		}
+	}
+	take("check", whole)
+	take("judge", filepath.Join(bare, "core.csv"), "--limits", bare, "--stages", "cool 0 min")
+	for name, want := range map[string]string{"tray": "", "slice": "as fast as a probe", "top": "", "core": "does not follow from the plan"} {
+		if x, ok := got[name]; !ok || want == "" && x != "" || !strings.Contains(x, want) {
+			t.Errorf("%s: %q, want %q; all: %v", name, x, want, got)
+		}
+	}
+}

@@ -85,6 +85,21 @@ func foodAt(rec *workbook.Record) *record.Food {
 	return f
 }
 
+// slowProbeS is how soon a food settles that a slow probe may look like, s: of food that settles later none of the pulls that tests draw went
+// unnoticed where a limit was then met; own choice.
+const slowProbeS = 1200.0
+
+// unseenIn is why a slow probe that leaves a food and stays out would not be told.
+func unseenIn(f *record.Food) report.Unseen {
+	switch {
+	case f.Follows == nil:
+		return report.Undescribed
+	case f.SettleS < slowProbeS:
+		return report.Quick
+	}
+	return 0
+}
+
 // filmOff is how many times as high as typed a film may be before what a food does may be taken for a leap; own choice.
 const filmOff = 3.0
 
@@ -444,6 +459,7 @@ func (r *runner) measured(rec *workbook.Record, p *workbook.Product, out *report
 	inexact(rec, m)
 	if f := foodAt(rec); f != nil {
 		log = log.Within(*f, way.stretches(p.Steps))
+		m.Unseen = unseenIn(f)
 	}
 	re, lines := recording(rec, log, p, way, m)
 	if len(re.TimesS) == 0 {
