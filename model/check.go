@@ -506,7 +506,7 @@ func (c *checker) chilled(st *Step, e *Exposure) {
 	}
 }
 
-// air asks for dry or wet where air, or what radiates through it, heats the food.
+// air asks for dry or wet where air, or what radiates through it, heats the food or is to keep it hot, however cold it is itself.
 func (c *checker) air(st *Step, e *Exposure, high, before float64) {
 	if !e.inAir() {
 		return
@@ -514,7 +514,7 @@ func (c *checker) air(st *Step, e *Exposure, high, before float64) {
 	if e.RadiatingC != nil {
 		high = max(high, *e.RadiatingC)
 	}
-	heats := st.Stage.Heats && high > c.product.StartC || high > before+warmerK
+	heats := st.Stage.Heats || high > before+warmerK
 	if !heats {
 		return
 	}
@@ -524,7 +524,7 @@ func (c *checker) air(st *Step, e *Exposure, high, before float64) {
 // wetOrDry refuses air that heats the food where neither was said.
 func wetOrDry(found *cell.Errors, e *Exposure) {
 	if e.Wet == nil {
-		found.Add(cell.Error{At: e.At, Field: "Surface", Msg: "air or walls that are warmer than the food need dry or wet here: a wet surface heats much more slowly",
+		found.Add(cell.Error{At: e.At, Field: "Surface", Msg: "air needs dry or wet where it heats the food or keeps it hot: a wet surface heats much more slowly, and cools much faster",
 			Hint: "type wet for moist food that lies open, and dry only for food that is wrapped, lidded or truly dry"})
 	}
 }

@@ -204,6 +204,22 @@ func TestCheckAsksDryOrWetOnlyForHeating(t *testing.T) {
 	}
 }
 
+// A stage that is to heat the food or to keep it hot is asked in any air: evaporation cools the food beneath air that is colder than it, too.
+func TestCheckAsksDryOrWetOfHotStages(t *testing.T) {
+	for _, stage := range []*Stage{Cook, Rest, Cool, HoldHot, HoldCold, Store, Reheat} {
+		p, steps := plain()
+		p.StartC, steps = 62, steps[1:]
+		steps[0].Stage, steps[0].Medium = stage, Course{C: []float64{20}}
+		want := 0
+		if stage.Heats {
+			want = 1
+		}
+		if found := Check(p, steps); found.Faults() != want {
+			t.Errorf("%s: %v, want %d", stage.Name, found, want)
+		}
+	}
+}
+
 // Air that turns out warmer than the food, which its media alone do not show, is asked about while it is solved: the last medium of the
 // chill was warm, and the food is cold all the same.
 func TestSolveAsksDryOrWet(t *testing.T) {
@@ -211,7 +227,7 @@ func TestSolveAsksDryOrWet(t *testing.T) {
 	p.StartC, steps = 80, steps[1:]
 	steps[0].DurationS = 40000
 	steps[0].Medium = Course{Name: "air", TimesS: []float64{0, 3000, 40000}, C: []float64{70, 3, 3}}
-	warm := Step{Name: "warm", Stage: Reheat, DurationS: 5000, Exposure: Exposure{At: cell.Ref{Sheet: "Steps", Row: 9}, Surface: StillAir, Medium: Course{C: []float64{72}}}}
+	warm := Step{Name: "warm", Stage: Rest, DurationS: 5000, Exposure: Exposure{At: cell.Ref{Sheet: "Steps", Row: 9}, Surface: StillAir, Medium: Course{C: []float64{72}}}}
 	steps = append(steps, warm)
 	if found := Check(p, steps); len(found) > 0 {
 		t.Fatalf("the case is to be one that Check lets pass: %v", found)

@@ -2,6 +2,7 @@ package rules
 
 import (
 	"math"
+	"slices"
 
 	"slowpoint/model"
 )
@@ -41,11 +42,16 @@ func (v *view) carryOver(f *Finding) {
 	if g.Verdict == Met || g.Place == nil {
 		return
 	}
-	says, moist, after := v.rose(w, &g)
+	counts := newView(l, v.c)
+	if counts.stages = v.counted(); len(counts.stages) == 0 { // it is about the rest only, and nothing of that counts
+		counts = newView(&hot, v.c)
+	}
+	without := l.Kind.judge(counts)
+	says, moist, after := v.rose(w, &g, without.Verdict == Met)
 	switch {
 	case says == "":
-	case v.dry(after):
-		*f = l.Kind.judge(newView(&hot, v.c))
+	case without.Verdict != Met:
+		*f = without
 		f.Limit = l
 		f.Notes = append(f.Notes, says+". "+say("carry-over not counted", nil))
 		f.Cautions = append(f.Cautions, NoCarryOver)
@@ -56,18 +62,44 @@ func (v *view) carryOver(f *Finding) {
 	}
 }
 
-// dry tells whether the first step of a stretch is calculated as dry though the food is moist and lies open: in air, where nobody
-// said dry or wet; a film typed there stands for convection alone.
-func (v *view) dry(iv interval) bool {
-	if v.h.Recorded || v.h.Product == nil {
-		return false
+// counted is what counts of the stages: not what moist food does after a cook or a reheat from the first step on in which it is dry.
+func (v *view) counted() []interval {
+	moist := !v.h.Recorded && v.h.Product != nil && slices.ContainsFunc(v.h.Product.Foods(), func(f *model.Material) bool { return !f.Waterless })
+	out, from := []interval(nil), math.Inf(-1)
+	upTo := func(end float64) {
+		for _, s := range v.stages {
+			if a, b := math.Max(s.a, from), math.Min(s.b, end); b > a {
+				out = append(out, interval{a, b})
+			}
+		}
 	}
-	moist := false
-	for _, f := range v.h.Product.Foods() {
-		moist = moist || !f.Waterless
+	heated, cut := false, false
+	for _, sp := range v.h.Spans {
+		if sp.Step == nil {
+			continue
+		}
+		switch heats := sp.Step.Stage == model.Cook || sp.Step.Stage == model.Reheat; {
+		case heats && cut:
+			from, cut = sp.StartS, false
+		case !heats && moist && heated && !cut && openAndDry(sp.Step):
+			upTo(sp.StartS)
+			cut = true
+		}
+		heated = heated || sp.Step.Stage == model.Cook || sp.Step.Stage == model.Reheat
 	}
-	e := v.first(iv)
-	return moist && e != nil && (e.Surface == model.StillAir || e.Surface == model.MovingAir) && e.Wet == nil && (e.Cover == nil || e.Cover == model.Open)
+	if !cut {
+		upTo(v.c.end)
+	}
+	return out
+}
+
+// openAndDry tells whether food is calculated as dry in a step, on any face, though it lies open: in air, where nobody said dry or wet; a film
+// typed there stands for convection alone.
+func openAndDry(st *model.Step) bool {
+	dry := func(e *model.Exposure) bool {
+		return (e.Surface == model.StillAir || e.Surface == model.MovingAir) && e.Wet == nil && (e.Cover == nil || e.Cover == model.Open)
+	}
+	return dry(&st.Exposure) || slices.ContainsFunc(st.Faces, func(f model.FaceExposure) bool { return dry(&f.Exposure) })
 }
 
 // carriedOver enters the sentence on a limit that is met only by what the food gets after its heating.
@@ -78,8 +110,8 @@ func (f *Finding) carriedOver(says string) {
 }
 
 // rose says what the slowest place had at the end of a heating, and the highest that it came to before the next one, what
-// water does to that, and when it was. Of several heatings it is the one after which the place became warmest.
-func (v *view) rose(hot *view, g *Finding) (says, moist string, after interval) {
+// water does to that, and when it was; counts tells whether that counts. Of several heatings it is the one after which the place became warmest.
+func (v *view) rose(hot *view, g *Finding, counts bool) (says, moist string, after interval) {
 	p := v.c.path(*g.Place, interval{0, v.c.end})
 	left, rose, from := math.NaN(), math.Inf(-1), interval{}
 	for i, iv := range hot.stages {
@@ -110,7 +142,7 @@ func (v *view) rose(hot *view, g *Finding) (says, moist string, after interval) 
 			h["stage"] = r.stage.Name
 		}
 	}
-	if v.dry(from) {
+	if !counts {
 		h["met"] = say("would be carried", nil)
 	}
 	key := "carry-over"

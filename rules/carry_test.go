@@ -53,3 +53,63 @@ func TestCarryOverOfMoistFood(t *testing.T) {
 		})
 	}
 }
+
+// Only what comes before the first step in which moist food lies open and dry counts, wherever that step stands, and on whatever face; and
+// all of it again from the next cook on.
+func TestCarryOverBehindACover(t *testing.T) {
+	wet, film, wrap := true, 6., 0.05
+	covered := model.Exposure{Surface: model.StillAir, Cover: model.TightWrap, WrapM2KW: &wrap}
+	open, moist, typed := model.Exposure{Surface: model.StillAir}, model.Exposure{Surface: model.StillAir, Wet: &wet}, model.Exposure{Surface: model.Film, FilmW: &film}
+	type rest struct {
+		minutes float64
+		e       model.Exposure
+		top     *model.Exposure
+	}
+	for _, x := range []struct {
+		name    string
+		rests   []rest
+		again   bool // the whole again, from the cook on
+		verdict Verdict
+		stages  []*model.Stage // nil: cook and rest
+	}{
+		{"covered all the time", []rest{{1, covered, nil}, {24, covered, nil}}, false, Met, nil},
+		{"covered for a minute only", []rest{{1, covered, nil}, {24, open, nil}}, false, NotMet, nil},
+		{"wet for a minute only", []rest{{1, moist, nil}, {24, open, nil}}, false, NotMet, nil},
+		{"a typed film for a minute only", []rest{{1, typed, nil}, {24, open, nil}}, false, NotMet, nil},
+		{"open at the end, when all has been reached", []rest{{24, covered, nil}, {5, open, nil}}, false, Met, nil},
+		{"open on one face", []rest{{25, typed, &open}}, false, NotMet, nil},
+		{"open, then cooked again and covered", []rest{{5, open, nil}, {25, covered, nil}}, true, Met, nil},
+		{"open all the time, of the rest alone", []rest{{25, open, nil}}, false, NotMet, st(model.Rest)},
+	} {
+		t.Run(strings.ReplaceAll(x.name, " ", "-"), func(t *testing.T) {
+			q := model.Properties{KWmK: 0.47, RhoKgM3: 1050, CJkgK: 3500}
+			food := &model.Material{Name: "test food", Source: "test input", Props: func(float64) model.Properties { return q }}
+			steps := []model.Step{filmStep(model.Cook, 95, 165, 31)}
+			for _, r := range x.rests {
+				st := filmStep(model.Rest, r.minutes, 24, 1)
+				medium := st.Medium
+				st.Exposure, st.Medium = r.e, medium
+				if r.top != nil {
+					e := *r.top
+					e.Medium = medium
+					st.Faces = []model.FaceExposure{{Face: model.Top, Exposure: e}}
+				}
+				steps = append(steps, st)
+			}
+			if x.again {
+				steps = []model.Step{steps[0], steps[1], filmStep(model.Cook, 2, 165, 31), steps[2]}
+			}
+			h, err := model.Solve(model.Product{Name: "P", Shape: model.Slab, Size: model.Size{ThicknessM: 0.094}, Food: food, StartC: 7}, steps, model.Options{})
+			if err != nil {
+				t.Fatal(err)
+			}
+			l := Limit{Name: "L", Kind: Hold, FromC: c(52), TimeS: c(0), Counting: Total, Stages: st(model.Cook, model.Rest), Applies: Applies{All: true}}
+			if x.stages != nil {
+				l.Stages = x.stages
+			}
+			if f := Judge([]Limit{l}, nil, Subject{Product: "P", History: h}).Findings[0]; f.Verdict != x.verdict || strings.Contains(f.Why, "Inf") {
+				t.Errorf("%v, want %v: %s %q; centre %.1f °C after the cook, %.1f °C in the end", f.Verdict, x.verdict, f.Why, f.Notes, h.At(model.Place{}, 5700), h.At(model.Place{}, h.EndS()))
+			}
+		})
+	}
+}

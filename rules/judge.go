@@ -27,6 +27,8 @@ func Conclude(findings []Finding, groups []Group) Judgement {
 func Find(limits []Limit, s Subject) []Finding {
 	var out []Finding
 	usual := newCourses(s.History)
+	var drift *courses
+	asked := false
 	further := make([]*courses, len(s.Further))
 	for i := range s.Further {
 		further[i] = newCourses(s.Further[i].History)
@@ -43,9 +45,18 @@ func Find(limits []Limit, s Subject) []Finding {
 			if lessFavourable(g, f) {
 				f, g = g, f
 			}
-			f.narrowed(&g)
+			f.narrowed(&g, say("note margin run", nil))
 			if f.Verdict == Met && f.CarryOver == "" && g.CarryOver != "" { // true of one run is a reservation for both
 				f.carriedOver(g.CarryOver)
+			}
+		}
+		if f.Verdict == Met && s.Drift != nil && l.drifts(s.History) {
+			if !asked {
+				drift, asked = s.drift(), true
+			}
+			if drift != nil {
+				g := judgeOne(l, drift)
+				f.drifted(&g)
 			}
 		}
 		out = append(out, f)
@@ -53,9 +64,17 @@ func Find(limits []Limit, s Subject) []Finding {
 	return out
 }
 
+// drift prepares the run in which the food drifts fastest; nil if there is none.
+func (s *Subject) drift() *courses {
+	if h := s.Drift(); h != nil {
+		return newCourses(h)
+	}
+	return nil
+}
+
 // narrowed takes the margin in temperature of another run in which the limit is met as well, where that is smaller: the one with less room in time
-// is not always the one with less room in temperature.
-func (f *Finding) narrowed(other *Finding) {
+// is not always the one with less room in temperature. The note says so.
+func (f *Finding) narrowed(other *Finding, note string) {
 	if f.Verdict != Met || other.Verdict != Met || f.MarginK == nil || other.MarginK == nil || !(*other.MarginK < *f.MarginK-tieK) {
 		return
 	}
@@ -65,7 +84,7 @@ func (f *Finding) narrowed(other *Finding) {
 	if f.MarginPlace == "" && other.PlaceName != f.PlaceName {
 		f.MarginPlace = other.PlaceName
 	}
-	f.Notes = append(f.Notes, say("note margin run", nil))
+	f.Notes = append(f.Notes, note)
 }
 
 // Worse tells whether a finding is less favourable than another of the same limit: by verdict, then by room in time, then in temperature.

@@ -191,6 +191,7 @@ type Subject struct {
 	Family  string
 	History *model.History
 	Further []Run
+	Drift   func() *model.History // the run in which it drifts fastest (model.Drifted), asked for only where a limit needs it; nil, or of nil: none
 }
 
 // Judgement is everything that the limits say of a product.

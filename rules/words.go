@@ -149,6 +149,8 @@ var words = map[string]string{
 	"note at the edge":  "The place lies at the edge of those that ever were above {start}: it only just was, and for a place beyond it no clock started.",
 	"note edge":         "The place lies half a probe's breadth (0.6 mm) within the edge of those that ever were above {start}; at the edge itself, where it only just was, it is {value}. The verdict and the margin are those of the edge.",
 	"note margin place": "The margin in temperature is that of another place ({place}).",
+	"drift":             "{met}; but that rests on what the plan leaves blank of Radiating temperature, Film coefficient, Surface and Relative humidity: with walls as warm as the air, a film a quarter higher and moisture as unfavourable as it may be, {fast}. So it cannot be told.",
+	"note margin drift": "The margin in temperature is what would be left if the walls were as warm as the air, films of air a quarter higher and moisture as unfavourable as what the plan leaves blank allows.",
 	"note margin run":   "The margin in temperature is that of another of the runs.",
 	"note heatings":     "The process has {count} heatings separated by chilling; each is judged on its own, and the best counts.",
 	"note separated":    "The time is the sum of periods with chilling in between.",

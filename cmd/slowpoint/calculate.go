@@ -2,6 +2,7 @@ package main
 
 import (
 	"slices"
+	"sync"
 
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
@@ -19,6 +20,7 @@ type prediction struct {
 	product *workbook.Product
 	history *model.History
 	further []rules.Run
+	drift   func() *model.History
 }
 
 // predict makes every run of a product that is due.
@@ -28,7 +30,7 @@ func (r *runner) predict(p *workbook.Product, o model.Options) (*prediction, err
 		return nil, err
 	}
 	runs, err := further(p, h, o)
-	return &prediction{p, h, runs}, err
+	return &prediction{p, h, runs, drift(p, h, o)}, err
 }
 
 // runOf is a run by its name; "" for the usual one.
@@ -43,7 +45,7 @@ func (d *prediction) runOf(name string) *model.History {
 
 // find judges limits, before groups join them.
 func (d *prediction) find(limits []rules.Limit) []rules.Finding {
-	return rules.Find(limits, rules.Subject{Product: d.product.Name, Family: d.product.Family, History: d.history, Further: d.further})
+	return rules.Find(limits, rules.Subject{Product: d.product.Name, Family: d.product.Family, History: d.history, Further: d.further, Drift: d.drift})
 }
 
 // judged predicts and judges one product, at the unfavourable ends of what varies.
@@ -68,7 +70,7 @@ func (r *runner) judgedBy(p *workbook.Product, o model.Options) (*report.Product
 	if out.Further, err = further(p, h, o); err != nil {
 		return nil, err
 	}
-	subject.Further = out.Further
+	subject.Further, subject.Drift = out.Further, drift(p, h, o)
 	findings := rules.Find(r.plan.Limits, subject)
 	if len(p.Spreads) > 0 {
 		return out, r.worst(p, out, findings, o)
@@ -100,6 +102,23 @@ func further(p *workbook.Product, usual *model.History, o model.Options) ([]rule
 		out = append(out, rules.Run{Name: rules.WellMixed, History: h})
 	}
 	return out, nil
+}
+
+// drift makes, once it is asked for, the run in which food that stands or is kept drifts as fast as what the plan leaves open allows; where moisture makes
+// it impossible to calculate, without moisture. It gives nil where nothing is left open.
+func drift(p *workbook.Product, usual *model.History, o model.Options) func() *model.History {
+	return sync.OnceValue(func() *model.History {
+		for _, moist := range []bool{true, false} {
+			steps, open := model.Drifted(&p.Product, p.Steps, usual, moist)
+			if !open {
+				return nil
+			}
+			if h, err := model.Solve(p.Product, steps, o); err == nil {
+				return h
+			}
+		}
+		return nil
+	})
 }
 
 // calculate makes everything that a product's documents show.
