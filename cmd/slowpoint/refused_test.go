@@ -112,9 +112,9 @@ func TestOnlyBesideABrokenProduct(t *testing.T) {
 // than the food, at its cold end or once it is chilled, needs to be dry or wet. Invented plans.
 func TestRefusedAtTheEndsOfSpread(t *testing.T) {
 	for _, c := range []struct{ name, start, steps, courses, rows, says string }{
-		{"together", "5", "A,rest,reheat,300,still air,3,,\n", "", "all,thickness,1 mm,2 mm,b\nall,start temperature,1 °C,1 °C,b\nall,conductivity,5 %,5 %,b\nA/rest,medium temperature,1 °C,1.5 °C,b\n",
+		{"together", "5", "A,rest,store,300,still air,8.4,,\n", "", "all,thickness,1 mm,2 mm,b\nall,start temperature,1 °C,1 °C,b\nall,conductivity,5 %,5 %,b\nA/rest,medium temperature,1 °C,1.5 °C,b\n",
 			`Spread!B3: "start temperature" varies together with Spread row 5 to what cannot be calculated (1 °C colder at the start, rest 1.5 °C warmer): `},
-		{"alone", "80", "A,chill,cool,700,film,,falling,27\nA,rest,reheat,300,still air,8,,\n", "Course,Time (min),Temperature (°C)\nfalling,0,70\nfalling,50,10\nfalling,700,10\n",
+		{"alone", "80", "A,chill,cool,700,film,,falling,27\nA,rest,store,300,still air,8,,\n", "Course,Time (min),Temperature (°C)\nfalling,0,70\nfalling,50,10\nfalling,700,10\n",
 			"all,thickness,1 mm,2 mm,b\nall,start temperature,1 °C,1 °C,b\nA/rest,medium temperature,1 °C,9 °C,b\n",
 			`Spread!B4: "medium temperature" varies to what cannot be calculated (rest 9 °C warmer): `},
 	} {
@@ -124,7 +124,7 @@ func TestRefusedAtTheEndsOfSpread(t *testing.T) {
 				"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nTray,A,slab,31,Mash," + c.start + "\n",
 				"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Source\nMash,0.52,1040,3600,no,invented\n",
 				"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Course,Film coefficient (W/m²·K)\n" + c.steps,
-				"Limits":   "Limit,Rule,Stage,Applies to,To (°C),Code,Clause,Edition\ncold,by the end,reheat,all,8,invented,1,1\n",
+				"Limits":   "Limit,Rule,Stage,Applies to,To (°C),Code,Clause,Edition\ncold,by the end,store,all,8,invented,1,1\n",
 				"Spread":   "Applies to,Quantity,Minus,Plus,Basis\n" + c.rows,
 			}
 			if c.courses != "" {
