@@ -371,10 +371,15 @@ func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
 		m.factor(m.delta)
 		last, bent := worst, false
 		worst = 0
-		for i, d := range m.delta {
-			u[i] += d
-			bent = bent || u[i] < 0
-			if d = math.Abs(d) * max(1/unfrozenK, m.meanU[i]*heatCounts); !(d <= worst) {
+		for i, d := range delta {
+			x := u[i] + d
+			u[i] = x
+			bent = bent || x < 0
+			counts := 1 / unfrozenK
+			if x := meanU[i] * heatCounts; x > counts {
+				counts = x
+			}
+			if d = math.Abs(d) * counts; !(d <= worst) {
 				if worst = d; math.IsNaN(d) {
 					return false
 				}
@@ -392,10 +397,16 @@ func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
 
 // contents fills h with the heat contents that the last linear equations were solved for.
 func (m *lineMarch) contents(h, u []float64) {
-	for _, p := range m.parts {
-		for i := p[0]; i <= p[1]; i++ {
-			h[i] = m.mean[i] + m.meanU[i]*m.delta[i] + m.meanF[i]*m.delta[max(i-1, p[0])] + m.meanA[i]*m.delta[min(i+1, p[1])]
+	n := len(h)
+	mean, meanU, meanF, meanA, delta := m.mean[:n], m.meanU[:n], m.meanF[:n], m.meanA[:n], m.delta[:n]
+	before, here := 0.0, delta[0]
+	for i := range h {
+		after := 0.0 // the first and last volume of a layer do not go with those beyond it
+		if i+1 < n {
+			after = delta[i+1]
 		}
+		h[i] = mean[i] + meanU[i]*here + meanF[i]*before + meanA[i]*after
+		before, here = here, after
 	}
 }
 
