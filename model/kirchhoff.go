@@ -9,18 +9,31 @@ type uLaw struct {
 }
 
 // uPiece is a table from u = 0 on, downwards for the cold one. Its rows grow with the distance from 0, uRowsPerOctave to each doubling of
-// 1 + |u|/first, so that the place in it is read off the number's own bits.
+// 1 + |u|/first, so that the place in it is read off the number's own bits. The last row goes on in a straight line.
 type uPiece struct {
 	per  float64 // 1/first, m/W; negative for the cold piece
 	rows []uRow
 }
 
-// uRow holds cubics over a row in its own coordinate 0…1: of the heat content with its integral over u at the start of the row, and of the
+// uRow holds cubics over a row in its own coordinate 0…1: of the heat content, its integral over u from the start of the row on, and the
 // temperature.
 type uRow struct {
-	from, per, wide float64 // W/m, m/W, W/m
-	g               float64 // ∫h du from 0 to the row, J·W/m⁴
-	h, t            [4]float64
+	from, per float64    // W/m, m/W
+	g         float64    // ∫h du from 0 to the row, J·W/m⁴
+	h, sum, t [4]float64 // J/m³; J·W/m⁴, from the first power on; °C
+}
+
+// makeURow makes a row that begins at from, is d wide, both W/m, and has the integral g, J·W/m⁴, before it.
+func makeURow(from, d, g float64, h, t [4]float64) uRow {
+	return uRow{from: from, per: 1 / d, g: g, h: h, t: t, sum: [4]float64{d * h[0], d * h[1] / 2, d * h[2] / 3, d * h[3] / 4}}
+}
+
+// end gives the integral of the heat content where a row ends, J·W/m⁴.
+func (r *uRow) end() (g float64) { return r.g + r.sum[0] + r.sum[1] + r.sum[2] + r.sum[3] }
+
+// straightOn is the straight line on which a cubic over 0…1 goes on from its end.
+func straightOn(c [4]float64) [4]float64 {
+	return [4]float64{c[0] + c[1] + c[2] + c[3], c[1] + 2*c[2] + 3*c[3]}
 }
 
 const (
@@ -52,18 +65,19 @@ func (l *law) pieceByU(end float64) uPiece {
 		t, _, dt, du := l.at(h)
 		return point{h, t, 1 / du, dt / du}
 	}
-	p := uPiece{per: sign / uFirst, rows: make([]uRow, n)}
+	p := uPiece{per: sign / uFirst, rows: make([]uRow, n+1)}
 	a := at(sign * 1e-9) // beside the freezing point
 	a.h = 0
 	g := 0.0
-	for i := range p.rows {
+	for i := range n {
 		from, to := start(i), start(i+1)
 		d := to - from
 		b := at(l.heatAtU(to, a.h+a.dh*d))
-		r := uRow{from: from, per: 1 / d, wide: d, g: g, h: steadyCubic(a.h, b.h, a.dh*d, b.dh*d), t: steadyCubic(a.t, b.t, a.dt*d, b.dt*d)}
-		g += d * (r.h[0] + r.h[1]/2 + r.h[2]/3 + r.h[3]/4)
-		p.rows[i], a = r, b
+		p.rows[i] = makeURow(from, d, g, steadyCubic(a.h, b.h, a.dh*d, b.dh*d), steadyCubic(a.t, b.t, a.dt*d, b.dt*d))
+		g, a = p.rows[i].end(), b
 	}
+	last := &p.rows[n-1]
+	p.rows[n] = makeURow(start(n), 1/last.per, g, straightOn(last.h), straightOn(last.t))
 	return p
 }
 
@@ -95,7 +109,7 @@ func (l *law) heatAtU(u, h float64) float64 {
 	return h
 }
 
-// row finds the row of a Kirchhoff integral and the place in it; beyond the last row the place is above 1.
+// row finds the row of a Kirchhoff integral and the place in it.
 func (b *uLaw) row(u float64) (*uRow, float64) {
 	p := &b.warm
 	if u < 0 {
@@ -109,32 +123,24 @@ func (b *uLaw) row(u float64) (*uRow, float64) {
 	return r, (u - r.from) * r.per
 }
 
-// sums gives the heat content at u, J/m³, and its integral over u from 0.
-func (b *uLaw) sums(u float64) (g, h float64) {
-	r, x := b.row(u)
-	if x > 1 { // beyond the table
-		x--
-		top, d := r.h[0]+r.h[1]+r.h[2]+r.h[3], r.h[1]+2*r.h[2]+3*r.h[3]
-		h = top + x*d
-		return r.g + (r.h[0]+r.h[1]/2+r.h[2]/3+r.h[3]/4+x*(top+x*d/2))*r.wide, h
-	}
-	c := &r.h
-	return r.g + x*(c[0]+x*(c[1]*0.5+x*(c[2]*(1./3)+x*c[3]*0.25)))*r.wide, c[0] + x*(c[1]+x*(c[2]+x*c[3]))
+// sums gives the integral of the heat content over u from 0 to the place x of a row, J·W/m⁴, and the heat content there, J/m³.
+func (r *uRow) sums(x float64) (g, h float64) {
+	return r.g + x*(r.sum[0]+x*(r.sum[1]+x*(r.sum[2]+x*r.sum[3]))), r.h[0] + x*(r.h[1]+x*(r.h[2]+x*r.h[3]))
 }
 
 // mean gives the mean heat content over u - d to u + d, J/m³, with its slopes by u and by d.
 func (b *uLaw) mean(u, d float64) (h, byU, byD float64) {
-	if d < math.Abs(u) {
-		r, x := b.row(u)
-		if y := math.Abs(d * r.per); y <= x && x+y <= 1 { // all in one row
-			c := &r.h
-			y2 := y * y * (1. / 3)
-			bend := c[2] + 3*c[3]*x
-			return c[0] + x*(c[1]+x*(c[2]+x*c[3])) + y2*bend, (c[1] + x*(2*c[2]+x*3*c[3]) + y2*3*c[3]) * r.per, 2 * (1. / 3) * y * bend * math.Abs(r.per)
-		}
+	r, x := b.row(u - d)
+	s, y := b.row(u + d)
+	if r == s {
+		c := &r.h
+		x, y = (x+y)*0.5, d*r.per
+		y2 := y * y * (1. / 3)
+		bend := c[2] + 3*c[3]*x
+		return c[0] + x*(c[1]+x*(c[2]+x*c[3])) + y2*bend, (c[1] + x*(2*c[2]+x*3*c[3]) + y2*3*c[3]) * r.per, 2 * (1. / 3) * y * bend * r.per
 	}
-	g0, h0 := b.sums(u - d)
-	g1, h1 := b.sums(u + d)
+	g0, h0 := r.sums(x)
+	g1, h1 := s.sums(y)
 	half := 0.5 / d
 	h = (g1 - g0) * half
 	return h, (h1 - h0) * half, (h1+h0)*half - 2*h*half
@@ -144,9 +150,5 @@ func (b *uLaw) mean(u, d float64) (h, byU, byD float64) {
 func (b *uLaw) temperature(u float64) (t, dt float64) {
 	r, x := b.row(u)
 	c := &r.t
-	if x > 1 {
-		d := c[1] + 2*c[2] + 3*c[3]
-		return c[0] + c[1] + c[2] + c[3] + d*(x-1), d * r.per
-	}
 	return c[0] + x*(c[1]+x*(c[2]+x*c[3])), (c[1] + x*(2*c[2]+x*3*c[3])) * r.per
 }

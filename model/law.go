@@ -109,8 +109,9 @@ func tabulate(zeroC, endC float64, rows int, props func(c float64) (k, rhoC floa
 		c := at[i] + (at[i+1]-at[i])*(want-h[i])/(h[i+1]-h[i])
 		var dh, du, k, rc float64
 		for try := 0; try < 20; try++ {
-			dh, du = between(at[i], c)
-			if heat != nil {
+			if heat == nil {
+				dh, du = between(at[i], c)
+			} else {
 				dh = heat(c) - h[i]
 			}
 			k, rc = props(inside(c))
@@ -119,6 +120,9 @@ func tabulate(zeroC, endC float64, rows int, props func(c float64) (k, rhoC floa
 				break
 			}
 			c += off
+		}
+		if heat != nil {
+			_, du = between(at[i], c)
 		}
 		points[r] = point{c, u[i] + du, 1 / rc, k / rc}
 	}

@@ -144,7 +144,7 @@ type lineMarch struct {
 	c, slope, uRate           []float64 // temperatures, °C, with their slopes, K/s, and those of u, W/(m·s), now
 	rate2, c2, slope2, uRate2 []float64 // after the last try
 	h1, h2, u1, u2            []float64
-	b, f0, f1, f2             []float64  // W/m²
+	b, f0, f1                 []float64  // W/m²
 	mean, meanU, meanF, meanA []float64  // of the last look: mean heat content, its slopes by u, and by that of the node before and of the node after
 	temp, tempU               []float64  // of the last look, at faces and joints: temperature, its slope by u
 	low, diag, up, delta      []float64  // the three diagonals and the right side
@@ -160,7 +160,7 @@ func newLineMarch(g *lineGrid, laws []*law) *lineMarch {
 	m := &lineMarch{lineGrid: g, laws: laws, closeK: newtonK}
 	n := len(g.x)
 	for _, s := range []*[]float64{&m.spread, &m.fore, &m.aft, &m.h, &m.u, &m.rate, &m.c, &m.slope, &m.uRate, &m.rate2, &m.c2, &m.slope2, &m.uRate2,
-		&m.h1, &m.h2, &m.u1, &m.u2, &m.b, &m.f0, &m.f1, &m.f2, &m.mean, &m.meanU, &m.meanF, &m.meanA, &m.temp, &m.tempU, &m.low, &m.diag, &m.up, &m.delta} {
+		&m.h1, &m.h2, &m.u1, &m.u2, &m.b, &m.f0, &m.f1, &m.mean, &m.meanU, &m.meanF, &m.meanA, &m.temp, &m.tempU, &m.low, &m.diag, &m.up, &m.delta} {
 		*s = make([]float64, n)
 	}
 	for _, p := range g.parts {
@@ -313,7 +313,8 @@ func (m *lineMarch) begin(tau float64) {
 	}
 	m.q0 = m.qs[0] + m.qs[1]
 	m.fresh = true
-	m.temperatures(m.u, m.rate, m.c, m.slope, m.uRate, tau)
+	m.read(m.u, m.c, m.slope)
+	m.rates(m.rate, m.slope, m.uRate, tau)
 }
 
 // Newton's method ends with a correction this small, K; where ice forms all but at one temperature with a smaller one, and with one whose square is
@@ -371,10 +372,15 @@ func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
 		m.factor(m.delta)
 		last, bent := worst, false
 		worst = 0
-		for i, d := range m.delta {
-			u[i] += d
-			bent = bent || u[i] < 0
-			if d = math.Abs(d) * max(1/unfrozenK, m.meanU[i]*heatCounts); !(d <= worst) {
+		for i, d := range delta {
+			x := u[i] + d
+			u[i] = x
+			bent = bent || x < 0
+			counts := 1 / unfrozenK
+			if x := meanU[i] * heatCounts; x > counts {
+				counts = x
+			}
+			if d = math.Abs(d) * counts; !(d <= worst) {
 				if worst = d; math.IsNaN(d) {
 					return false
 				}
@@ -392,10 +398,16 @@ func (m *lineMarch) solve(u, h, b []float64, a, tau float64) bool {
 
 // contents fills h with the heat contents that the last linear equations were solved for.
 func (m *lineMarch) contents(h, u []float64) {
-	for _, p := range m.parts {
-		for i := p[0]; i <= p[1]; i++ {
-			h[i] = m.mean[i] + m.meanU[i]*m.delta[i] + m.meanF[i]*m.delta[max(i-1, p[0])] + m.meanA[i]*m.delta[min(i+1, p[1])]
+	n := len(h)
+	mean, meanU, meanF, meanA, delta := m.mean[:n], m.meanU[:n], m.meanF[:n], m.meanA[:n], m.delta[:n]
+	before, here := 0.0, delta[0]
+	for i := range h {
+		after := 0.0 // the first and last volume of a layer do not go with those beyond it
+		if i+1 < n {
+			after = delta[i+1]
 		}
+		h[i] = mean[i] + meanU[i]*here + meanF[i]*before + meanA[i]*after
+		before, here = here, after
 	}
 }
 
@@ -484,63 +496,81 @@ func (m *lineMarch) back(y []float64) {
 // changes only by accept.
 func (m *lineMarch) try(tau, d float64) float64 {
 	a := trGamma / 2 * d
-	copy(m.u1, m.u)
+	n := len(m.h)
+	w, h, u, h1, u1, h2, u2, b := m.w[:n], m.h[:n], m.u[:n], m.h1[:n], m.u1[:n], m.h2[:n], m.u2[:n], m.b[:n]
+	f0, f1, rate, rate2, delta := m.f0[:n], m.f1[:n], m.rate[:n], m.rate2[:n], m.delta[:n]
+	copy(u1, u)
 	if !m.fresh {
-		for i, r := range m.uRate {
-			m.u1[i] = m.u[i] + trGamma*d*r
+		for i, r := range m.uRate[:n] {
+			u1[i] += trGamma * d * r
 		}
 	}
-	for i := range m.b {
-		m.f0[i] = m.w[i] * m.rate[i]
-		m.b[i] = m.w[i]*m.h[i] + a*m.f0[i]
+	for i, r := range rate {
+		f0[i] = w[i] * r
+		b[i] = w[i]*h[i] + a*f0[i]
 	}
-	if !m.solve(m.u1, m.h1, m.b, a, tau+trGamma*d) {
+	if !m.solve(u1, h1, b, a, tau+trGamma*d) {
 		return math.Inf(1)
 	}
-	a1 := 1 / (trGamma * (2 - trGamma))
+	a1, perA := 1/(trGamma*(2-trGamma)), 1/a
 	m.tryJ = a1 * a * (m.q0 + m.qs[0] + m.qs[1])
-	for i := range m.b {
-		m.f1[i] = (m.w[i]*m.h1[i] - m.b[i]) / a
-		m.b[i] = m.w[i] * (a1*m.h1[i] - (a1-1)*m.h[i])
-		m.u2[i] = m.u[i] + (m.u1[i]-m.u[i])/trGamma
+	for i, x := range h1 {
+		f1[i] = (w[i]*x - b[i]) * perA
+		b[i] = w[i] * (a1*x - (a1-1)*h[i])
+		u2[i] = u[i] + (u1[i]-u[i])*(1/trGamma)
 	}
-	if !m.solve(m.u2, m.h2, m.b, a, tau+d) {
+	if !m.solve(u2, h2, b, a, tau+d) {
 		return math.Inf(1)
 	}
 	m.q2 = m.qs[0] + m.qs[1]
 	m.tryJ += a * m.q2
 	c := 2 * trErrorK * d
-	for i := range m.delta {
-		m.f2[i] = (m.w[i]*m.h2[i] - m.b[i]) / a
-		m.delta[i] = c * (m.f0[i]/trGamma - m.f1[i]/(trGamma*(1-trGamma)) + m.f2[i]/(1-trGamma))
+	c0, c1, c2 := c/trGamma, c/(trGamma*(1-trGamma)), c/(1-trGamma)
+	for i, x := range h2 {
+		f := (w[i]*x - b[i]) * perA
+		delta[i] = c0*f0[i] - c1*f1[i] + c2*f
+		rate2[i] = f / w[i]
 	}
-	m.unheld(m.delta) // no error
-	m.back(m.delta)
+	m.unheld(delta) // no error
+	m.unheld(rate2)
+	m.back(delta)
+	m.read(u2, m.c2, m.slope2)
 	worst := 0.0
-	for i, e := range m.delta {
-		_, thin := m.laws[m.food[i]].byU.temperature(m.u2[i])
-		if e = math.Abs(e) * max(thin, m.meanU[i]*heatCounts); !(e <= worst) {
+	for i, e := range delta {
+		counts := m.slope2[i]
+		if x := m.meanU[i] * heatCounts; x > counts {
+			counts = x
+		}
+		if e = math.Abs(e) * counts; !(e <= worst) {
 			if worst = e; math.IsNaN(e) {
 				return math.Inf(1)
 			}
 		}
 	}
-	for i, f := range m.f2 {
-		m.rate2[i] = f / m.w[i]
-	}
-	m.unheld(m.rate2)
-	m.temperatures(m.u2, m.rate2, m.c2, m.slope2, m.uRate2, tau+d)
+	m.rates(rate2, m.slope2, m.uRate2, tau+d)
 	if m.fresh {
 		return worst
 	}
-	at := cubicAt(0, trGamma, d)
-	for i, u := range m.u1 {
-		c, _ := m.laws[m.food[i]].byU.temperature(u)
-		kept := at.c0*m.c[i] + at.s0*m.slope[i] + at.c1*m.c2[i] + at.s1*m.slope2[i]
-		worst = max(worst, math.Abs(c-kept)*betweenCounts)
-	}
+	worst = max(worst, m.between(d)*betweenCounts)
 	if math.IsNaN(worst) {
 		return math.Inf(1)
+	}
+	return worst
+}
+
+// between is how far the first part of a step of length d lies from the cubic between its ends, which the track keeps, K.
+func (m *lineMarch) between(d float64) float64 {
+	at := cubicAt(0, trGamma, d)
+	worst := 0.0
+	c, slope, c2, slope2 := m.c[:len(m.u1)], m.slope[:len(m.u1)], m.c2[:len(m.u1)], m.slope2[:len(m.u1)]
+	for _, p := range m.parts {
+		l := m.laws[m.food[p[0]]].byU
+		for i := p[0]; i <= p[1]; i++ {
+			t, _ := l.temperature(m.u1[i])
+			if off := math.Abs(t - (at.c0*c[i] + at.s0*slope[i] + at.c1*c2[i] + at.s1*slope2[i])); !(off <= worst) {
+				worst = off
+			}
+		}
 	}
 	return worst
 }
@@ -584,14 +614,24 @@ func (m *lineMarch) keep(k *track, t float64) {
 	copy(slope, m.slope)
 }
 
-// temperatures fills c with the temperatures at u and slope with what rate, W/m³, makes of them in a second, tau s into the step; held faces go as
-// their media do. How heat contents go with u is that of the last look, which was at u or within what Newton's method leaves of it.
-func (m *lineMarch) temperatures(u, rate, c, slope, uRate []float64, tau float64) {
-	n := len(c)
-	for i := range c {
-		m.delta[i] = rate[i]
-		m.diag[i], m.up[i], m.low[i] = m.meanU[i], m.meanA[i], m.meanF[i]
+// read fills c with the temperatures at u, and slope with their slopes by u, K·m/W.
+func (m *lineMarch) read(u, c, slope []float64) {
+	for _, p := range m.parts {
+		l := m.laws[m.food[p[0]]].byU
+		for i := p[0]; i <= p[1]; i++ {
+			c[i], slope[i] = l.temperature(u[i])
+		}
 	}
+}
+
+// rates fills uRate with what rate, W/m³, makes of u in a second, tau s into the step, and makes slopes of temperatures by u slopes in time; held
+// faces go as their media do. How heat contents go with u is that of the last look, which was at u or within what Newton's method leaves of it.
+func (m *lineMarch) rates(rate, slope, uRate []float64, tau float64) {
+	n := len(rate)
+	copy(m.delta, rate)
+	copy(m.diag, m.meanU)
+	copy(m.up, m.meanA)
+	copy(m.low, m.meanF)
 	for side, s := range m.skins {
 		if s != nil && s.held {
 			i := (n - 1) * side
@@ -601,10 +641,9 @@ func (m *lineMarch) temperatures(u, rate, c, slope, uRate []float64, tau float64
 		}
 	}
 	m.factor(m.delta)
-	for i, u := range u {
-		c[i], slope[i] = m.laws[m.food[i]].byU.temperature(u)
-		uRate[i] = m.delta[i]
-		slope[i] *= uRate[i]
+	copy(uRate, m.delta)
+	for i, r := range uRate[:n] {
+		slope[i] *= r
 	}
 }
 
