@@ -124,7 +124,7 @@ func TestRefusedAtTheEndsOfSpread(t *testing.T) {
 				"Products": "Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nTray,A,slab,31,Mash," + c.start + "\n",
 				"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Source\nMash,0.52,1040,3600,no,invented\n",
 				"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Course,Film coefficient (W/m²·K)\n" + c.steps,
-				"Limits":   "Limit,Rule,Stage,Applies to,To (°C),Code,Clause,Edition\ncold,by the end,store,all,8,invented,1,1\n",
+				"Limits":   "Limit,Rule,Stage,Applies to,To (°C),Code,Clause,Edition\ncold,by the end,store,all,30,invented,1,1\n",
 				"Spread":   "Applies to,Quantity,Minus,Plus,Basis\n" + c.rows,
 			}
 			if c.courses != "" {
