@@ -96,6 +96,9 @@ func (s *solver) goesOn(h *History, e *settles, step int) bool {
 	share := (e.untilS - h.Spans[step].StartS) / e.backS
 	bent := func(tau float64) {
 		for _, x := range exposures(s.product.Shape, last.Step) {
+			if x.Surface.NoMedium {
+				continue
+			}
 			m := s.raised(last.Step, x, nil)
 			e.bentK = max(e.bentK, math.Abs(m.at(tau)-m.onward(length, tau)))
 		}

@@ -275,3 +275,20 @@ func TestCornerJustBeforeAChange(t *testing.T) {
 		}
 	}
 }
+
+// A face that nothing surrounds has no course whose corner could make the food bend just before a change.
+func TestCornerBesideAnInsulatedFace(t *testing.T) {
+	q := Properties{0.5, 1050, 2750}
+	food := &Material{Name: "test food", Source: "input of the test", Props: func(float64) Properties { return q }}
+	oven := filmTo(25, 0)
+	oven.Medium = Course{TimesS: []float64{0, 1490, 1500}, C: []float64{90, 80, 60}}
+	steps := []Step{{Name: "cook", Stage: Cook, DurationS: 1500, Exposure: oven, Faces: []FaceExposure{{Face: Underside, Exposure: Exposure{Surface: Insulated}}}},
+		ownStep(Cool, 1500, 30, 2)}
+	h, err := Solve(Product{Name: "p", Shape: Slab, Size: Size{ThicknessM: 0.04}, Food: food, StartC: 10}, steps, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if h.settling[1].bentK == 0 {
+		t.Error("the corner of the oven does not count")
+	}
+}
