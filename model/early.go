@@ -13,7 +13,7 @@ import (
 // behind a film, and held: Carslaw & Jaeger 1959, sections 2.7 and 2.5; sphere, ibid. section 9.3, with the film less k/R; all from memory.) Where all
 // faces drive alike, as in a food of one temperature, both ends are nearly the same, and the temperature is as good as exact.
 //
-// The course that goes on is taken from the last instants before the change.
+// The course that goes on is taken from the last instants before the change. What a face that reacts drives in stands in early_skin.go.
 
 // settles is what keeps the temperatures of a step just after its beginning.
 type settles struct {
@@ -24,6 +24,7 @@ type settles struct {
 	uneven         float64    // how many times the best conductivity is the least
 	bentK          float64    // what corners of the old surroundings may do to the course that goes on at the surface, K
 	drives         []drive    // by face
+	within         [2]float64 // what no place leaves, °C
 }
 
 // drive is what a face does to the food beyond what went on.
@@ -165,7 +166,7 @@ func settlingAt(all []settles, t float64) *settles {
 // keep keeps the temperature of a place at t, °C, within what is possible; by are its temperatures at the instants before, lo and hi what can have come in.
 func (e *settles) keep(c, t float64, by []float64, lo, hi float64) float64 {
 	on, slack := e.onward(by, t)
-	return max(on+lo-slack, min(on+hi+slack, c))
+	return clamp(max(on+lo-slack, min(on+hi+slack, c)), e.within)
 }
 
 // settlingOf is what the drives are worked out from.
@@ -176,6 +177,7 @@ type settlingOf struct {
 	since int         // step
 	now   int         // step
 	by    [][]float64 // temperatures of all nodes at the instants before, °C
+	faces map[*Exposure]*metFace
 }
 
 // conducts gives the least and greatest thermal diffusivity, m²/s, and conductivity, W/(m·K), of the foods at the temperatures that occur.
@@ -209,6 +211,10 @@ func (s *solver) drivesOf(h *History, e *settles, since, now int) {
 	_, of.k = s.conducts(h)
 	e.uneven = of.k[1] / of.k[0]
 	s.before(h, e, of.by)
+	e.within = [2]float64{math.Inf(-1), math.Inf(1)}
+	if s.marches() {
+		e.within = of.within(e)
+	}
 	for a := range s.used {
 		switch {
 		case s.ball != nil && a > 0:
@@ -249,7 +255,10 @@ func (of *settlingOf) drive(e *settles, axis, side int) drive {
 	for m := of.since; m <= of.now; m++ {
 		x := s.steps[m].on(face)
 		if x.reacts() {
-			return of.anything(d)
+			if !of.reacting(e, &d, face, m, &differ, &flow) {
+				return of.anything(d)
+			}
+			continue
 		}
 		w := s.constantW(x)
 		d.film = [2]float64{min(d.film[0], w/of.k[1]), max(d.film[1], w/of.k[0])}
@@ -303,14 +312,7 @@ func (of *settlingOf) node(e *settles, d *drive, face *Face, step, node int, dif
 	if went == nil {
 		return false
 	}
-	from, to := max(sp.StartS, e.sinceS), min(sp.EndS, e.untilS)
-	times := []float64{from, to}
-	for _, k := range of.h.knots[step] {
-		if t := sp.StartS + k; t > from && t < to {
-			times = append(times, t)
-		}
-	}
-	for _, t := range times {
+	for _, t := range of.instants(e, step) {
 		c, slack := e.onward(of.by[node], t)
 		q, qSlack := went(t, c)
 		if w < leastFilm {
@@ -337,7 +339,10 @@ func (of *settlingOf) went(e *settles, d *drive, face *Face, node int) func(t, c
 	}
 	s, sp := of.s, of.h.Spans[of.since-1]
 	x := s.steps[of.since-1].on(face)
-	if w := s.constantW(x); !x.reacts() && !math.IsInf(w, 1) {
+	if x.reacts() {
+		return of.wentReacting(e, face, node)
+	}
+	if w := s.constantW(x); !math.IsInf(w, 1) {
 		if w < leastFilm {
 			return func(_, _ float64) (q, slack float64) { return 0, 0 }
 		}
