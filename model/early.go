@@ -437,6 +437,48 @@ func (d *drive) inSphere(radiusM, r, film, root float64) float64 {
 	return scale * (behindFilm(radiusM-r, film, root) - behindFilm(radiusM+r, film, root))
 }
 
+// held is the film by conductivity of a face that is held.
+var held = [2]float64{math.Inf(1), math.Inf(1)}
+
+// inPlate is the most that a drive of 1 at one side of a plate does at a depth, with nothing let out at the other: reflected there and here, or, where
+// that has come to and fro, all that came in, spread.
+func (d *drive) inPlate(depthM, thickM, root float64) float64 {
+	if 2*root < thickM {
+		return d.flat(depthM, d.film[1], root) + d.flat(2*thickM-depthM, d.film[1], root) + d.flat(2*thickM+depthM, d.film[1], root) + d.flat(4*thickM-depthM, d.film[1], root)
+	}
+	all := root*root/thickM + thickM/3
+	switch {
+	case d.flows:
+		return all
+	case math.IsInf(d.film[1], 1):
+		return 1
+	}
+	return min(1, d.film[1]*all)
+}
+
+// throughLayers is the most that a drive of 1 at a face of layers does at a depth under it. What can be at the far side of a layer, with nothing let
+// out there, is what the next one is held at.
+func (e *settles) throughLayers(s *solver, d *drive, depthM, root float64) float64 {
+	layers := s.product.Layers
+	most, on := 1.0, d
+	for i := range layers {
+		l := &layers[i]
+		if d.side < 0 {
+			l = &layers[len(layers)-1-i]
+		}
+		part := on.inPlate(min(depthM, l.ThicknessM), l.ThicknessM, root)
+		if i > 0 {
+			part = min(1, e.uneven*part)
+		}
+		most *= part
+		if depthM -= l.ThicknessM; depthM <= 0 {
+			break
+		}
+		on = &drive{film: held}
+	}
+	return most
+}
+
 // answer is the least and the most that the food at a place takes up of a drive of 1, and how much of a bend of the surroundings before may have come in.
 type answer struct{ least, most, bend float64 }
 
@@ -457,8 +499,11 @@ func (e *settles) answered(s *solver, d *drive, x, tau float64) (a answer) {
 	if depth > 2*farZ*math.Sqrt(e.alpha[1]*(tau+3*e.backS+s.settle)) {
 		return a
 	}
-	if e.bentK > 0 {
-		a.bend = min(1, 4*math.Erfc(depth/(2*math.Sqrt(e.alpha[1]*(tau+3*e.backS+s.settle)))))
+	if bentRoot := math.Sqrt(e.alpha[1] * (tau + 3*e.backS + s.settle)); e.bentK > 0 {
+		a.bend = min(1, 4*math.Erfc(depth/(2*bentRoot)))
+		if s.product.Shape == LayeredSlab {
+			a.bend = min(1, 2*e.throughLayers(s, &drive{side: d.side, film: held}, depth, bentRoot))
+		}
 	}
 	switch {
 	case s.ball != nil: // 4·erfc(z) is above the answer of a held sphere from a quarter of the radius out, the other within
@@ -470,13 +515,15 @@ func (e *settles) answered(s *solver, d *drive, x, tau float64) (a answer) {
 	case s.kinds[d.axis] == radial:
 		a.most = d.inSphere(r, math.Abs(x), d.film[1], root[1])
 		a.least = d.flat(depth, d.film[0], root[0])
+	case s.product.Shape == LayeredSlab:
+		a.most = e.throughLayers(s, d, depth, root[1])
+		if d.side == 0 {
+			a.most += e.throughLayers(s, d, far, root[1])
+		}
 	default:
 		a.most, a.least = d.flat(depth, d.film[1], root[1]), d.flat(depth, d.film[0], root[0])
 		if d.side == 0 {
 			a.most += d.flat(far, d.film[1], root[1])
-		}
-		if s.product.Shape == LayeredSlab { // what lies below may hold less heat than the first layer, and warms twice as much at the joint at most
-			a.most = min(1, 2*a.most)
 		}
 	}
 	if !d.exact { // where conductivity follows the temperature it is the integral of conductivity that is answered like this
