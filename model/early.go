@@ -262,8 +262,9 @@ func (of *settlingOf) drive(e *settles, axis, side int) drive {
 		}
 		w := s.constantW(x)
 		d.film = [2]float64{min(d.film[0], w/of.k[1]), max(d.film[1], w/of.k[0])}
+		times := of.instants(e, m)
 		for i := range of.by {
-			if of.on(&d, i) && !of.node(e, &d, face, m, i, &differ, &flow) {
+			if of.on(&d, i) && !of.node(e, &d, faceAt{face, m, times}, i, &differ, &flow) {
 				return of.anything(d)
 			}
 		}
@@ -302,17 +303,24 @@ type extent [2]float64
 
 func (x *extent) add(c, by float64) { *x = extent{min(x[0], c-by), max(x[1], c+by)} }
 
+// faceAt is a face in a step, at some instants of the chain, s.
+type faceAt struct {
+	face   *Face
+	step   int
+	timesS []float64
+}
+
 // node adds what a node of a face asks for in a step: by how much the food there would have to differ, K, and the heat that is more than what went on,
 // W/m². It is false where nothing is known.
-func (of *settlingOf) node(e *settles, d *drive, face *Face, step, node int, differ, flow *extent) bool {
-	s, sp := of.s, of.h.Spans[step]
-	x := s.steps[step].on(face)
-	w, medium := s.constantW(x), s.raised(&s.steps[step], x, nil)
-	went := of.went(e, d, face, node)
+func (of *settlingOf) node(e *settles, d *drive, at faceAt, node int, differ, flow *extent) bool {
+	s, sp := of.s, &of.h.Spans[at.step]
+	x := s.steps[at.step].on(at.face)
+	w, medium := s.constantW(x), s.raised(&s.steps[at.step], x, nil)
+	went := of.went(e, d, at.face, node)
 	if went == nil {
 		return false
 	}
-	for _, t := range of.instants(e, step) {
+	for _, t := range at.timesS {
 		c, slack := e.onward(of.by[node], t)
 		q, qSlack := went(t, c)
 		if w < leastFilm {
