@@ -13,7 +13,7 @@ import (
 // behind a film, and held: Carslaw & Jaeger 1959, sections 2.7 and 2.5; sphere, ibid. section 9.3, with the film less k/R; all from memory.) Where all
 // faces drive alike, as in a food of one temperature, both ends are nearly the same, and the temperature is as good as exact.
 //
-// The course that goes on is taken from the last instants before the change.
+// The course that goes on is taken from the last instants before the change. What a face that reacts drives in stands in early_skin.go.
 
 // settles is what keeps the temperatures of a step just after its beginning.
 type settles struct {
@@ -24,6 +24,7 @@ type settles struct {
 	uneven         float64    // how many times the best conductivity is the least
 	bentK          float64    // what corners of the old surroundings may do to the course that goes on at the surface, K
 	drives         []drive    // by face
+	within         [2]float64 // what no place leaves, °C
 }
 
 // drive is what a face does to the food beyond what went on.
@@ -96,6 +97,9 @@ func (s *solver) goesOn(h *History, e *settles, step int) bool {
 	share := (e.untilS - h.Spans[step].StartS) / e.backS
 	bent := func(tau float64) {
 		for _, x := range exposures(s.product.Shape, last.Step) {
+			if x.Surface.NoMedium {
+				continue
+			}
 			m := s.raised(last.Step, x, nil)
 			e.bentK = max(e.bentK, math.Abs(m.at(tau)-m.onward(length, tau)))
 		}
@@ -162,7 +166,7 @@ func settlingAt(all []settles, t float64) *settles {
 // keep keeps the temperature of a place at t, °C, within what is possible; by are its temperatures at the instants before, lo and hi what can have come in.
 func (e *settles) keep(c, t float64, by []float64, lo, hi float64) float64 {
 	on, slack := e.onward(by, t)
-	return max(on+lo-slack, min(on+hi+slack, c))
+	return clamp(max(on+lo-slack, min(on+hi+slack, c)), e.within)
 }
 
 // settlingOf is what the drives are worked out from.
@@ -173,6 +177,7 @@ type settlingOf struct {
 	since int         // step
 	now   int         // step
 	by    [][]float64 // temperatures of all nodes at the instants before, °C
+	faces map[*Exposure]*metFace
 }
 
 // conducts gives the least and greatest thermal diffusivity, m²/s, and conductivity, W/(m·K), of the foods at the temperatures that occur.
@@ -206,6 +211,10 @@ func (s *solver) drivesOf(h *History, e *settles, since, now int) {
 	_, of.k = s.conducts(h)
 	e.uneven = of.k[1] / of.k[0]
 	s.before(h, e, of.by)
+	e.within = [2]float64{math.Inf(-1), math.Inf(1)}
+	if s.marches() {
+		e.within = of.within(e)
+	}
 	for a := range s.used {
 		switch {
 		case s.ball != nil && a > 0:
@@ -246,12 +255,16 @@ func (of *settlingOf) drive(e *settles, axis, side int) drive {
 	for m := of.since; m <= of.now; m++ {
 		x := s.steps[m].on(face)
 		if x.reacts() {
-			return of.anything(d)
+			if !of.reacting(e, &d, face, m, &differ, &flow) {
+				return of.anything(d)
+			}
+			continue
 		}
 		w := s.constantW(x)
 		d.film = [2]float64{min(d.film[0], w/of.k[1]), max(d.film[1], w/of.k[0])}
+		times := of.instants(e, m)
 		for i := range of.by {
-			if of.on(&d, i) && !of.node(e, &d, face, m, i, &differ, &flow) {
+			if of.on(&d, i) && !of.node(e, &d, faceAt{face, m, times}, i, &differ, &flow) {
 				return of.anything(d)
 			}
 		}
@@ -290,24 +303,24 @@ type extent [2]float64
 
 func (x *extent) add(c, by float64) { *x = extent{min(x[0], c-by), max(x[1], c+by)} }
 
+// faceAt is a face in a step, at some instants of the chain, s.
+type faceAt struct {
+	face   *Face
+	step   int
+	timesS []float64
+}
+
 // node adds what a node of a face asks for in a step: by how much the food there would have to differ, K, and the heat that is more than what went on,
 // W/m². It is false where nothing is known.
-func (of *settlingOf) node(e *settles, d *drive, face *Face, step, node int, differ, flow *extent) bool {
-	s, sp := of.s, of.h.Spans[step]
-	x := s.steps[step].on(face)
-	w, medium := s.constantW(x), s.raised(&s.steps[step], x, nil)
-	went := of.went(e, d, face, node)
+func (of *settlingOf) node(e *settles, d *drive, at faceAt, node int, differ, flow *extent) bool {
+	s, sp := of.s, &of.h.Spans[at.step]
+	x := s.steps[at.step].on(at.face)
+	w, medium := s.constantW(x), s.raised(&s.steps[at.step], x, nil)
+	went := of.went(e, d, at.face, node)
 	if went == nil {
 		return false
 	}
-	from, to := max(sp.StartS, e.sinceS), min(sp.EndS, e.untilS)
-	times := []float64{from, to}
-	for _, k := range of.h.knots[step] {
-		if t := sp.StartS + k; t > from && t < to {
-			times = append(times, t)
-		}
-	}
-	for _, t := range times {
+	for _, t := range at.timesS {
 		c, slack := e.onward(of.by[node], t)
 		q, qSlack := went(t, c)
 		if w < leastFilm {
@@ -334,7 +347,10 @@ func (of *settlingOf) went(e *settles, d *drive, face *Face, node int) func(t, c
 	}
 	s, sp := of.s, of.h.Spans[of.since-1]
 	x := s.steps[of.since-1].on(face)
-	if w := s.constantW(x); !x.reacts() && !math.IsInf(w, 1) {
+	if x.reacts() {
+		return of.wentReacting(e, face, node)
+	}
+	if w := s.constantW(x); !math.IsInf(w, 1) {
 		if w < leastFilm {
 			return func(_, _ float64) (q, slack float64) { return 0, 0 }
 		}
@@ -429,6 +445,48 @@ func (d *drive) inSphere(radiusM, r, film, root float64) float64 {
 	return scale * (behindFilm(radiusM-r, film, root) - behindFilm(radiusM+r, film, root))
 }
 
+// held is the film by conductivity of a face that is held.
+var held = [2]float64{math.Inf(1), math.Inf(1)}
+
+// inPlate is the most that a drive of 1 at one side of a plate does at a depth, with nothing let out at the other: reflected there and here, or, where
+// that has come to and fro, all that came in, spread.
+func (d *drive) inPlate(depthM, thickM, root float64) float64 {
+	if 2*root < thickM {
+		return d.flat(depthM, d.film[1], root) + d.flat(2*thickM-depthM, d.film[1], root) + d.flat(2*thickM+depthM, d.film[1], root) + d.flat(4*thickM-depthM, d.film[1], root)
+	}
+	all := root*root/thickM + thickM/3
+	switch {
+	case d.flows:
+		return all
+	case math.IsInf(d.film[1], 1):
+		return 1
+	}
+	return min(1, d.film[1]*all)
+}
+
+// throughLayers is the most that a drive of 1 at a face of layers does at a depth under it. What can be at the far side of a layer, with nothing let
+// out there, is what the next one is held at.
+func (e *settles) throughLayers(s *solver, d *drive, depthM, root float64) float64 {
+	layers := s.product.Layers
+	most, on := 1.0, d
+	for i := range layers {
+		l := &layers[i]
+		if d.side < 0 {
+			l = &layers[len(layers)-1-i]
+		}
+		part := on.inPlate(min(depthM, l.ThicknessM), l.ThicknessM, root)
+		if i > 0 {
+			part = min(1, e.uneven*part)
+		}
+		most *= part
+		if depthM -= l.ThicknessM; depthM <= 0 {
+			break
+		}
+		on = &drive{film: held}
+	}
+	return most
+}
+
 // answer is the least and the most that the food at a place takes up of a drive of 1, and how much of a bend of the surroundings before may have come in.
 type answer struct{ least, most, bend float64 }
 
@@ -449,8 +507,11 @@ func (e *settles) answered(s *solver, d *drive, x, tau float64) (a answer) {
 	if depth > 2*farZ*math.Sqrt(e.alpha[1]*(tau+3*e.backS+s.settle)) {
 		return a
 	}
-	if e.bentK > 0 {
-		a.bend = min(1, 4*math.Erfc(depth/(2*math.Sqrt(e.alpha[1]*(tau+3*e.backS+s.settle)))))
+	if bentRoot := math.Sqrt(e.alpha[1] * (tau + 3*e.backS + s.settle)); e.bentK > 0 {
+		a.bend = min(1, 4*math.Erfc(depth/(2*bentRoot)))
+		if s.product.Shape == LayeredSlab {
+			a.bend = min(1, 2*e.throughLayers(s, &drive{side: d.side, film: held}, depth, bentRoot))
+		}
 	}
 	switch {
 	case s.ball != nil: // 4·erfc(z) is above the answer of a held sphere from a quarter of the radius out, the other within
@@ -462,13 +523,15 @@ func (e *settles) answered(s *solver, d *drive, x, tau float64) (a answer) {
 	case s.kinds[d.axis] == radial:
 		a.most = d.inSphere(r, math.Abs(x), d.film[1], root[1])
 		a.least = d.flat(depth, d.film[0], root[0])
+	case s.product.Shape == LayeredSlab:
+		a.most = e.throughLayers(s, d, depth, root[1])
+		if d.side == 0 {
+			a.most += e.throughLayers(s, d, far, root[1])
+		}
 	default:
 		a.most, a.least = d.flat(depth, d.film[1], root[1]), d.flat(depth, d.film[0], root[0])
 		if d.side == 0 {
 			a.most += d.flat(far, d.film[1], root[1])
-		}
-		if s.product.Shape == LayeredSlab { // what lies below may hold less heat than the first layer, and warms twice as much at the joint at most
-			a.most = min(1, 2*a.most)
 		}
 	}
 	if !d.exact { // where conductivity follows the temperature it is the integral of conductivity that is answered like this

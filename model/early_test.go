@@ -275,3 +275,79 @@ func TestCornerJustBeforeAChange(t *testing.T) {
 		}
 	}
 }
+
+// A face that nothing surrounds has no course whose corner could make the food bend just before a change.
+func TestCornerBesideAnInsulatedFace(t *testing.T) {
+	q := Properties{0.5, 1050, 2750}
+	food := &Material{Name: "test food", Source: "input of the test", Props: func(float64) Properties { return q }}
+	oven := filmTo(25, 0)
+	oven.Medium = Course{TimesS: []float64{0, 1490, 1500}, C: []float64{90, 80, 60}}
+	steps := []Step{{Name: "cook", Stage: Cook, DurationS: 1500, Exposure: oven, Faces: []FaceExposure{{Face: Underside, Exposure: Exposure{Surface: Insulated}}}},
+		ownStep(Cool, 1500, 30, 2)}
+	h, err := Solve(Product{Name: "p", Shape: Slab, Size: Size{ThicknessM: 0.04}, Food: food, StartC: 10}, steps, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if h.settling[1].bentK == 0 {
+		t.Error("the corner of the oven does not count")
+	}
+}
+
+// A thin layer over a gap, or over what takes little heat, warms as fast as a plate that lets nothing out, and is not held back: what is kept of control
+// volumes, which do not swing, is never farther from a finer march than they are.
+func TestThinLayersAreNotHeldBack(t *testing.T) {
+	draw := rand.New(rand.NewPCG(3, 9))
+	u := func(lo, hi float64) float64 { return lo + (hi-lo)*draw.Float64() }
+	worst := 0.0
+	for n := range 60 {
+		food := func() *Material {
+			q := Properties{u(0.3, 0.6), 1050, u(2500, 3900)}
+			return &Material{Name: "test food", Source: "input of the test", Table: true, LowC: -10, HighC: 160, Props: func(float64) Properties { return q }}
+		}
+		p := Product{Name: "p", Shape: LayeredSlab, StartC: u(2, 30)}
+		one := food()
+		for range 2 + draw.IntN(2) {
+			l := Layer{Food: one, ThicknessM: u(0.0004, 0.004), BelowM2KW: u(0, 0.08)}
+			if draw.IntN(2) == 0 {
+				l.ThicknessM = u(0.005, 0.04)
+			}
+			if n%3 == 2 {
+				l.Food = food()
+			}
+			p.Layers = append(p.Layers, l)
+			p.Size.ThicknessM += l.ThicknessM
+		}
+		p.Layers[len(p.Layers)-1].BelowM2KW = 0
+		steps := []Step{ownStep(Cook, 1800, u(5, 300), 95), ownStep(Cool, 1800, u(5, 300), 2)}
+		if n%2 == 0 {
+			for i := range steps {
+				steps[i].Faces = []FaceExposure{{Face: Underside, Exposure: Exposure{Surface: Insulated}}}
+			}
+		}
+		h, err := Solve(p, steps, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		fine, err := Solve(p, steps, Options{ErrorFromS: 2})
+		if err != nil {
+			t.Fatal(err)
+		}
+		for i, sp := range h.Spans {
+			for range 100 {
+				at, place := sp.StartS+u(h.settle/3, h.settle), Place{UpM: u(-0.5, 0.5) * p.Size.ThicknessM}
+				if draw.IntN(2) == 0 {
+					place.UpM = p.Size.ThicknessM/2 - u(0, 2)*p.Layers[0].ThicknessM
+				}
+				var alone, truth [1]float64
+				h.field.course(h.body.coord(place), []float64{at}, alone[:])
+				fine.field.course(fine.body.coord(place), []float64{at}, truth[:])
+				is, was := math.Abs(h.At(place, at)-truth[0]), math.Abs(alone[0]-truth[0])
+				if worst = max(worst, is-was); is-was > 2e-3+fine.ErrorK {
+					t.Errorf("%d: %.4f °C %.1f s into step %d, %.4f by control volumes, %.4f by more, %.2f mm under the top of layers of %.2f mm and more", n, h.At(place, at), at-sp.StartS, i, alone[0], truth[0],
+						1000*(p.Size.ThicknessM/2-place.UpM), 1000*p.Layers[0].ThicknessM)
+				}
+			}
+		}
+	}
+	t.Logf("worst %.4f K", worst)
+}

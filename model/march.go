@@ -140,7 +140,9 @@ func (s *solver) marchOnce(e effort) (*History, *marched) {
 		s.described(sp, [2]float64{low, high})
 		h.hull[i] = f.bounds[i]
 	}
-	h.settling = s.settling(h) // radiation reaches beyond the media
+	if !e.rough {
+		h.settling = s.settling(h)
+	}
 	s.outside(f.track.reach(0, h.EndS()))
 	h.Method = f.method()
 	h.IceMoves = s.front

@@ -855,7 +855,9 @@ func (s *solver) finish(h *History) {
 	for _, cs := range s.chain {
 		h.knots = append(h.knots, cs.knots)
 	}
-	h.settling = s.settling(h)
+	if !s.marches() { // else when it is known how far the surfaces reach
+		h.settling = s.settling(h)
+	}
 	h.Method = s.method()
 }
 
