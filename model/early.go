@@ -245,7 +245,7 @@ func (of *settlingOf) drive(e *settles, axis, side int) drive {
 	differ, flow := extent{math.Inf(1), math.Inf(-1)}, extent{math.Inf(1), math.Inf(-1)}
 	for m := of.since; m <= of.now; m++ {
 		x := s.steps[m].on(face)
-		if x.reacts() {
+		if x.reacts(&s.steps[m]) {
 			return of.anything(d)
 		}
 		w := s.constantW(x)
@@ -334,7 +334,7 @@ func (of *settlingOf) went(e *settles, d *drive, face *Face, node int) func(t, c
 	}
 	s, sp := of.s, of.h.Spans[of.since-1]
 	x := s.steps[of.since-1].on(face)
-	if w := s.constantW(x); !x.reacts() && !math.IsInf(w, 1) {
+	if w := s.constantW(x); !x.reacts(&s.steps[of.since-1]) && !math.IsInf(w, 1) {
 		if w < leastFilm {
 			return func(_, _ float64) (q, slack float64) { return 0, 0 }
 		}

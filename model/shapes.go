@@ -61,8 +61,8 @@ var (
 		film: stated(1000, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 (Çengel, Heat Transfer, typical values): food conducts so badly that more makes no difference"),
 		Help: "water at the boil"}
 	Steam = &Surface{Name: "steam", May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"},
-		film: stated(steamW, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 for pure condensing steam (Çengel, Heat Transfer, typical values); air in the steam lowers it strongly"),
-		Help: "condensing steam, air vented; with a relative humidity below 100 % steam with air in it, which condenses up to its dew point"}
+		film: stated(steamW, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 for pure condensing steam (Çengel, Heat Transfer, typical values); air in the steam lowers it strongly, which is calculated from a few degrees below boiling on, and with a relative humidity"),
+		Help: "condensing steam, air vented; colder than boiling, or with a relative humidity below 100 %, steam with air in it, which condenses up to its dew point"}
 	ContactPlate = &Surface{Name: "contact plate", Needs: []string{"Wrap resistance"},
 		Help: "a plate pressed on; its contact goes into Wrap resistance"}
 	Held      = &Surface{Name: "held", Help: "the surface itself is kept at the temperature"}
