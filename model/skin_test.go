@@ -410,7 +410,7 @@ func TestConstantSurroundings(t *testing.T) {
 		{"water bath", Exposure{Surface: WaterBath}, skinCase(), waterBathW},
 		{"contact plate", Exposure{Surface: ContactPlate, WrapM2KW: ptr(0.004)}, skinCase(), 250},
 		{"typed around a pot", Exposure{Surface: Film, FilmW: ptr(23.0)}, pot, 23},
-		{"a pot in stirred water", Exposure{Surface: StirredWater, WrapM2KW: ptr(0.002)}, pot, 1 / (1/95.0 + 0.002 + 1/50.0)},
+		{"a pot in stirred water", Exposure{Surface: StirredWater, WrapM2KW: ptr(0.002)}, pot, 1 / (1.0/waterBathW + 0.002 + 1/50.0)},
 		{"a pot in steam", Exposure{Surface: Steam, Medium: Course{C: []float64{98}}}, pot, 1 / (1/1000.0 + 1/50.0)},
 		{"a pot on a plate", Exposure{Surface: ContactPlate, WrapM2KW: ptr(0.004)}, pot, 1 / (0.004 + 1/50.0)},
 		{"a pot whose wall is held", Exposure{Surface: Held}, pot, 50},
