@@ -44,7 +44,7 @@ func (s *solver) marches() bool {
 	}
 	for i := range s.steps {
 		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
-			if e.reacts() {
+			if e.reacts(&s.steps[i]) {
 				return true
 			}
 		}
@@ -219,7 +219,7 @@ func (s *solver) tooMany(nodes int) bool {
 	for i := range s.steps {
 		cs := chainStep{knots: []float64{0}}
 		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
-			cs.follow(e, s.steps[i].DurationS)
+			cs.follow(e, &s.steps[i])
 		}
 		n := len(cs.knots) - 1
 		if s.corners += n; n > most {
@@ -273,7 +273,7 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 		made[e] = k
 		worn = append(worn, wornSkin{k, face})
 		if !e.Surface.NoMedium {
-			cs.follow(&own, st.DurationS)
+			cs.follow(&own, st)
 		}
 		return k
 	}

@@ -127,7 +127,7 @@ func (s *solver) wetFaces() bool {
 	}
 	for i := range s.steps {
 		for _, e := range exposures(s.product.Shape, &s.steps[i]) {
-			if e.wet() || e.steamWithAir() {
+			if e.wet() || e.steamWithAir(&s.steps[i]) {
 				return true
 			}
 		}

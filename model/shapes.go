@@ -55,14 +55,14 @@ var (
 		film: stated(waterBathW, "stated low: a vacuum-packed roast cooled more slowly in water than in air of 2 m/s (James & James 2002, Meat Refrigeration, table 16.7), at 21 to 31 W/m²K by how its shape and start are read; textbooks give 50 to 100 for liquids left still"),
 		Help: "water left still; a low film is taken unless you type one"}
 	StirredWater = &Surface{Name: "stirred water", May: []string{"Film coefficient", "Wrap resistance"},
-		film: stated(95, "low end of 95 to 155 W/m²K for a pouch in stirred water (Baldwin 2012, Int. J. Gastronomy and Food Science 1:15-30; from memory)"),
-		Help: "water kept moving; a low film is taken unless you type one"}
+		film: stated(waterBathW, "stated low, as in a water bath: measured joints in water cooled as slowly as with 21 to 31 W/m²K (James & James 2002, Meat Refrigeration, table 16.7), and whether that water was stirred is not published; 95 to 155 for a pouch in stirred water (Baldwin 2012, Int. J. Gastronomy and Food Science 1:15-30; from memory) has to be typed"),
+		Help: "water kept moving; the low film of a water bath is taken unless you type one (95 to 155 W/m²K for a pouch, Baldwin 2012, from memory)"}
 	BoilingWater = &Surface{Name: "boiling water", May: []string{"Film coefficient", "Wrap resistance"},
 		film: stated(1000, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 (Çengel, Heat Transfer, typical values): food conducts so badly that more makes no difference"),
 		Help: "water at the boil"}
 	Steam = &Surface{Name: "steam", May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"},
-		film: stated(steamW, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 for pure condensing steam (Çengel, Heat Transfer, typical values); air in the steam lowers it strongly"),
-		Help: "condensing steam, air vented; with a relative humidity below 100 % steam with air in it, which condenses up to its dew point"}
+		film: stated(steamW, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 for pure condensing steam (Çengel, Heat Transfer, typical values); air in the steam lowers it strongly, which is calculated from a few degrees below boiling on, and with a relative humidity"),
+		Help: "condensing steam, air vented; colder than boiling, or with a relative humidity below 100 %, steam with air in it, which condenses up to its dew point"}
 	ContactPlate = &Surface{Name: "contact plate", Needs: []string{"Wrap resistance"},
 		Help: "a plate pressed on; its contact goes into Wrap resistance"}
 	Held      = &Surface{Name: "held", Help: "the surface itself is kept at the temperature"}
@@ -74,7 +74,8 @@ var (
 // steamW is the film of condensing steam, W/(m²·K).
 const steamW = 1000
 
-// waterBathW is the film taken in water left still, W/(m²·K): just below the lowest that the measured cases can be read to give.
+// waterBathW is the film taken in water, still or stirred, W/(m²·K): just below the lowest that the measured cases can be read to give. What
+// their water did is not published; with the 95 of a pouch in stirred water a joint that took 6.9 h came out at 5.3 h.
 const waterBathW = 20
 
 // Refusal is a process or food that conduction does not describe: what a person may type, why it is refused, what to do instead.

@@ -1,6 +1,9 @@
 package model
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // skin is how a face, or the whole surface, exchanges heat during one step. It is for one goroutine.
 //
@@ -46,7 +49,7 @@ type around struct {
 	massWK   float64 // mass that evaporates by the film and the drive, K·kg/J: 1/(cp Le^(2/3))
 	vapourPa float64
 	dewC     float64 // steam with air only
-	uchidaW  float64 // film of condensing steam with air, W/(m²·K)
+	uchidaW  float64 // film of condensing steam with air, W/(m²·K), times what multiplies it
 }
 
 // usualEmissivity is taken where a radiating temperature stands without an emissivity: foods lie at 0.9 to 0.95 (from memory).
@@ -77,14 +80,14 @@ func newSkin(e *Exposure, c *filmCase, aw *float64, st *Step) *skin {
 		s.insulated, s.linear = true, true
 		return s
 	}
-	if !e.reacts() {
+	if !e.reacts(st) {
 		u := e.filmUsed(nil, &s.film)
 		s.linear, s.totalW, s.held = true, u.TotalW, math.IsInf(u.TotalW, 1)
 		return s
 	}
 	s.totalPa = pressurePa(st.AltitudeM)
 	s.seriesR = e.seriesM2KW(&s.film)
-	s.steamAir = e.steamWithAir()
+	s.steamAir = e.steamWithAir(st)
 	switch {
 	case e.FilmW != nil:
 		s.filmW = *e.FilmW
@@ -111,6 +114,8 @@ func (s *skin) wets(e *Exposure, aw *float64) {
 		s.humidity = cursor{x: e.Medium.TimesS, y: e.Medium.RH}
 	case e.RH != nil:
 		s.humidity = cursor{y: []float64{*e.RH}}
+	case s.steamAir: // the most vapour that it can hold
+		s.humidity = cursor{y: []float64{100}}
 	case s.wet && s.slowHeats: // dry air: the most evaporation
 		s.humidity = cursor{y: []float64{0}}
 	case s.wet: // the least
@@ -134,8 +139,9 @@ func (e *Exposure) wet() bool { return e.Wet != nil && *e.Wet }
 // inAir tells whether the surroundings are air, whose film, radiation and moisture can be worked out.
 func (e *Exposure) inAir() bool { return e.Surface == StillAir || e.Surface == MovingAir }
 
-// steamWithAir tells whether steam is said not to be all vapour.
-func (e *Exposure) steamWithAir() bool {
+// steamWithAir tells whether steam is said not to be all vapour, or cannot be: what is colder than the boiling point holds air, at best
+// saturated. From where even then it condenses with the film of pure steam, it is taken as pure, which is the same.
+func (e *Exposure) steamWithAir(st *Step) bool {
 	if e.Surface != Steam || e.FilmW != nil {
 		return false
 	}
@@ -144,12 +150,18 @@ func (e *Exposure) steamWithAir() bool {
 			return true
 		}
 	}
-	return e.Medium.RH == nil && e.RH != nil && *e.RH < 100
+	if e.Medium.RH == nil && e.RH != nil && *e.RH < 100 {
+		return true
+	}
+	total := pressurePa(st.AltitudeM)
+	return slices.ContainsFunc(e.Medium.C, func(c float64) bool {
+		return uchidaW(humidityRatio(vapourPa(c, 100, total), total)) < steamW
+	})
 }
 
 // reacts tells whether the exchange of heat is no constant coefficient: its film follows the surface, or it radiates, or moisture counts.
-func (e *Exposure) reacts() bool {
-	return e.Surface.law != nil || e.steamWithAir() || e.inAir() && (e.FilmW == nil || e.RadiatingC != nil || e.wet())
+func (e *Exposure) reacts(st *Step) bool {
+	return e.Surface.law != nil || e.steamWithAir(st) || e.inAir() && (e.FilmW == nil || e.RadiatingC != nil || e.wet())
 }
 
 // seriesM2KW is what lies between the outer surface and the food, m²·K/W.
@@ -190,7 +202,7 @@ func (s *skin) surroundings(mediumC, rhPc float64) around {
 	a.massWK = 1 / (moistCp(a.ratio) * lewisFactor)
 	if s.steamAir {
 		a.dewC = dewC(a.vapourPa)
-		a.uchidaW = min(uchidaW(a.ratio), steamW)
+		a.uchidaW = min(uchidaW(a.ratio), steamW) * s.exp.filmFactor()
 	}
 	return a
 }

@@ -33,6 +33,9 @@ func (s *skin) used(face *Face, r surfaceRange, durS float64) FilmUsed {
 			u.FilmW = a.uchidaW
 		}
 		say(&source, "steam with air: Uchida, Oyama & Togo 1965 (from memory), at most %d W/(m²·K), to the dew point of the steam's own pressure, %.1f °C at the start; a hotter surface warms as in still air, %s", steamW, a.dewC, s.air.words(outer, a.mediumC))
+		if s.exp.RH == nil && s.exp.Medium.RH == nil || s.exp.Medium.RH == nil && *s.exp.RH >= 100 {
+			say(&source, "colder than boiling (%.1f °C here), so that it holds air: 100 %% relative humidity is taken, the most vapour that it can hold", satC(s.totalPa))
+		}
 		say(&caution, "film coefficient assumed, not measured")
 	default:
 		say(&source, "%s, followed as the surface changes; at the start food surface %.1f °C, air %.1f °C", s.air.words(outer, a.mediumC), outer, a.mediumC)

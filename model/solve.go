@@ -469,10 +469,11 @@ func (cs *chainStep) group(m Course, durS float64) int {
 }
 
 // follow adds the instants at which the medium of an exposure changes its slope, in temperature or, where moisture may count, in humidity.
-func (cs *chainStep) follow(e *Exposure, durS float64) {
+func (cs *chainStep) follow(e *Exposure, st *Step) {
+	durS := st.DurationS
 	m := &e.Medium
 	cs.group(*m, durS)
-	if m.RH != nil && e.reacts() {
+	if m.RH != nil && e.reacts(st) {
 		rh := thinned(Course{TimesS: m.TimesS, C: m.RH}, durS)
 		cs.turns(&rh, durS)
 	}

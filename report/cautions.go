@@ -31,7 +31,7 @@ var triggers = []trigger{
 		return anyExposure(sp.Step, func(e *model.Exposure) bool { return len(e.Medium.C) > 0 && !e.Measured })
 	})},
 	{"film coefficient assumed", stepsWhere(func(sp *model.Span) bool { return anyFilm(sp, func(f *model.FilmUsed) bool { return !f.Typed }) })},
-	{"water film assumed high", stepsWhere(func(sp *model.Span) bool {
+	{"water film taken low", stepsWhere(func(sp *model.Span) bool {
 		return anyExposure(sp.Step, func(e *model.Exposure) bool {
 			return (e.Surface == model.WaterBath || e.Surface == model.StirredWater) && e.FilmW == nil
 		})
@@ -76,7 +76,7 @@ var triggers = []trigger{
 }
 
 // ofCalculation are cautions about how a prediction is made; a record has none of them.
-var ofCalculation = []string{"medium is a set-point", "film coefficient assumed", "water film assumed high", "evaporation left out",
+var ofCalculation = []string{"medium is a set-point", "film coefficient assumed", "water film taken low", "evaporation left out",
 	"carry-over without evaporation", "properties from composition", "conductivity scatter", "thick food may flow", "layers touch perfectly",
 	"step did not reach its temperature", "step ended by the model"}
 

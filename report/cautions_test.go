@@ -68,7 +68,7 @@ func TestCautions(t *testing.T) {
 		{"water bath without a typed film", func(_ *Head, p *Product) {
 			s := p.History.Spans[0].Step
 			s.Surface, s.FilmW = model.WaterBath, nil
-		}, "water film assumed high, " + always, "a few tens"},
+		}, "water film taken low, " + always, "a few tens"},
 		{"water bath with a typed film", func(_ *Head, p *Product) { p.History.Spans[0].Step.Surface = model.WaterBath }, always, ""},
 		{"open in air", func(_ *Head, p *Product) { p.History.Spans[1].Step.Cover = nil }, "evaporation left out, " + always, "left out: Chiller"},
 		{"rest after a cook", func(_ *Head, p *Product) { p.History.Spans[1].Step.Stage = model.Rest }, "carry-over without evaporation, " + always, "step Chiller"},

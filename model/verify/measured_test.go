@@ -47,7 +47,7 @@ func TestMeasuredCases(t *testing.T) {
 // TestMeasuredClockAtOnce: the clock of what begins at the temperature from which it is timed starts with its first step.
 func TestMeasuredClockAtOnce(t *testing.T) {
 	long := timed(pieceOf("Ham, sliced, regular (11% fat)", model.Brick, model.Size{ThicknessM: 0.12, WidthM: 0.12, LengthM: 0.4}, 70),
-		step("spray", 1800, model.Exposure{Surface: model.StirredWater, Medium: constant(18)}), step("chill", 6*3600, blown(3, 0)))
+		step("spray", 1800, exposure(95, 18)), step("chill", 6*3600, blown(3, 0)))
 	got, err := long.from(70, 40)()
 	if err != nil {
 		t.Fatal(err)
