@@ -254,7 +254,7 @@ func (of *settlingOf) drive(e *settles, axis, side int) drive {
 	differ, flow := extent{math.Inf(1), math.Inf(-1)}, extent{math.Inf(1), math.Inf(-1)}
 	for m := of.since; m <= of.now; m++ {
 		x := s.steps[m].on(face)
-		if x.reacts() {
+		if x.reacts(&s.steps[m]) {
 			if !of.reacting(e, &d, face, m, &differ, &flow) {
 				return of.anything(d)
 			}
@@ -347,7 +347,7 @@ func (of *settlingOf) went(e *settles, d *drive, face *Face, node int) func(t, c
 	}
 	s, sp := of.s, of.h.Spans[of.since-1]
 	x := s.steps[of.since-1].on(face)
-	if x.reacts() {
+	if x.reacts(&s.steps[of.since-1]) {
 		return of.wentReacting(e, face, node)
 	}
 	if w := s.constantW(x); !math.IsInf(w, 1) {
