@@ -38,6 +38,7 @@ func (s *solver) boiling(h *History) {
 			if low, _ := h.body.extremes(s.main.at(t)); e == nil || low.c <= limit {
 				continue
 			}
+			h.Boils = true
 			h.Warnings.Add(s.boilsOver(h, e, sp, t, limit))
 			return
 		}

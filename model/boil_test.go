@@ -31,7 +31,7 @@ func TestSolveWarnsOfBoilingThroughout(t *testing.T) {
 		{"stirred", func(p *Product, s []Step) {
 			p.Shape, p.Size = Stirred, Size{VolumeM3: 0.015, AreaM2: 0.32}
 			oven(s, 212, 9000)
-		}, 2, "Temperature", []string{"anywhere: it is stirred"}},
+		}, 2, "Temperature", []string{"anywhere: one temperature throughout"}},
 		{"one face alone", func(_ *Product, s []Step) {
 			oven(s, 98, 40000)
 			hot := s[0].Exposure

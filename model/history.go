@@ -58,8 +58,10 @@ type History struct {
 	ErrorFromS float64
 	IceMoves   bool   // ice may form or melt: ErrorK leaves out the places beside its front, which change by degrees in seconds
 	Method     string // in words, for the report
-	// Warnings are what only the calculation shows and what makes its result doubtful: food that is hotter than boiling water throughout.
-	Warnings cell.Errors
+	// Warnings are what only the calculation shows and what makes its result doubtful: food that is hotter than boiling water throughout (Boils),
+	// or beyond the range of its components' properties (Beyond), or a step that is over at once.
+	Warnings      cell.Errors
+	Boils, Beyond bool
 	// Bound says in words why temperatures are bounds from BoundFromS on (a chill medium raised to the freezing point:
 	// the true food is at or below them until it freezes); "" if they are not.
 	Bound      string

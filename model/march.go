@@ -143,7 +143,8 @@ func (s *solver) marchOnce(e effort) (*History, *marched) {
 	if !e.rough {
 		h.settling = s.settling(h)
 	}
-	s.outside(f.track.reach(0, h.EndS()))
+	low, high := f.track.reach(0, h.EndS())
+	s.outside(h, low, high)
 	h.Method = f.method()
 	h.IceMoves = s.front
 	return h, f
@@ -156,23 +157,6 @@ func (s *solver) described(sp *Span, hull [2]float64) {
 	}
 	sp.PropsAtC = (min(hull[0], boilingLimitC) + min(hull[1], boilingLimitC)) / 2
 	sp.Props = s.props(sp.PropsAtC)
-}
-
-// outsideK is how far a temperature may leave the rows of a table of properties, K.
-const outsideK = 0.05
-
-// outside refuses a food of which the temperatures leave its table of properties.
-func (s *solver) outside(low, high float64) {
-	for _, f := range s.product.Foods() {
-		if !f.Table {
-			continue
-		}
-		if low < f.LowC-outsideK || high > f.HighC+outsideK {
-			s.refused.Add(cell.Error{At: f.At, Field: "At temperature", Typed: fmt.Sprintf("%g to %g °C", f.LowC, f.HighC),
-				Msg:  fmt.Sprintf("the food %s gets as cold as %.1f °C and as hot as %.1f °C, and its properties are not given there", f.Name, low, high),
-				Hint: "add rows for these temperatures, or one row alone for a constant"})
-		}
-	}
 }
 
 // mostKept is how many numbers a track may keep: 300 MB. A march that kept more than againKept is not made again: with more nodes and shorter

@@ -173,9 +173,10 @@ type Material struct {
 	FreezingC     *float64 // initial freezing point, °C
 	WaterActivity *float64
 	Flow          *Flow
-	Waterless     bool   // it holds no water, so that nothing in it boils; false: it does, or nobody knows
-	SetForm       string // of a food that flows: the built-in food that it is once it has set; "" if none is listed
-	Composition   string // in words, for the report: "water 71.7 %, protein 21.2 %, …"; "" if typed as properties
+	Waterless     bool    // it holds no water, so that nothing in it boils; false: it does, or nobody knows
+	SetForm       string  // of a food that flows: the built-in food that it is once it has set; "" if none is listed
+	FatPc         float64 // fat, % of the mass, where it is composed; else 0
+	Composition   string  // in words, for the report: "water 71.7 %, protein 21.2 %, …"; "" if typed as properties
 
 	// EnthalpyJkg gives the heat content in J/kg through freezing, rising strictly, from LowC to HighC. It is set where FreezingC is known and
 	// the composition tells how much ice forms; Props then holds below FreezingC too: conductivity with the ice, the density at the

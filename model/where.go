@@ -10,7 +10,7 @@ import (
 // Where says in words where a place lies: by the name of the user's point that lies there, else by Lies.
 func (p *Product) Where(at Place) string {
 	if p.Shape == Stirred {
-		return "anywhere: it is stirred"
+		return "anywhere: one temperature throughout"
 	}
 	for _, pt := range p.Points {
 		if pt.Name != "" && at.near(pt.Place) && p.layerAt(at.UpM) == p.layerAt(pt.UpM) {
@@ -25,7 +25,7 @@ func (p *Product) Lies(at Place) string {
 	z, up := p.Size, at.UpM
 	switch p.Shape {
 	case Stirred:
-		return "anywhere: it is stirred"
+		return "anywhere: one temperature throughout"
 	case Cylinder, Sphere:
 		return p.round(math.Abs(up), z.DiameterM/2)
 	case Spheroid:

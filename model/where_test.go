@@ -35,7 +35,7 @@ func TestWhere(t *testing.T) {
 		{"brick, end", Brick, size, Place{AlongM: 0.1}, "end surface"},
 		{"brick, corner", Brick, size, Place{UpM: 0.025, AcrossM: 0.05, AlongM: -0.1}, "corner of top, side and end"},
 		{"brick, within", Brick, size, Place{UpM: 0.01, AlongM: 0.03}, "35 mm above the underside, 30 mm from the middle of the length"},
-		{"stirred", Stirred, size, Place{}, "anywhere: it is stirred"},
+		{"stirred", Stirred, size, Place{}, "anywhere: one temperature throughout"},
 	} {
 		t.Run(x.name, func(t *testing.T) {
 			p := Product{Shape: x.shape, Size: x.size}

@@ -41,8 +41,9 @@ var triggers = []trigger{
 	})},
 	{"carry-over without evaporation", carryOver},
 	{"boiling throughout", func(h *Head, p *Product) ([]any, bool) {
-		return nil, p.History != nil && len(p.History.Warnings) > 0
+		return nil, p.History != nil && p.History.Boils
 	}},
+	{"beyond the properties", func(h *Head, p *Product) ([]any, bool) { return nil, p.History != nil && p.History.Beyond }},
 	{"moist surface above boiling", boiling},
 	{"chill medium raised to the freezing point", stepsWhere(func(sp *model.Span) bool { return sp.MediumFromC != nil })},
 	{"crossing freezing", func(h *Head, p *Product) ([]any, bool) { return freezing(h, p, false) }},
@@ -50,6 +51,7 @@ var triggers = []trigger{
 	{"properties from composition", func(h *Head, p *Product) ([]any, bool) {
 		return nil, slices.ContainsFunc(p.Product.Foods(), func(m *model.Material) bool { return m.Composed })
 	}},
+	{"fat that melts", fatty},
 	{"conductivity scatter", func(h *Head, p *Product) ([]any, bool) { return nil, p.run(rules.LowConductivity) != nil }},
 	{"thick food may flow", func(h *Head, p *Product) ([]any, bool) {
 		return nil, p.run(rules.WellMixed) != nil
@@ -77,7 +79,7 @@ var triggers = []trigger{
 
 // ofCalculation are cautions about how a prediction is made; a record has none of them.
 var ofCalculation = []string{"medium is a set-point", "film coefficient assumed", "water film taken low", "evaporation left out",
-	"carry-over without evaporation", "properties from composition", "conductivity scatter", "thick food may flow", "layers touch perfectly",
+	"carry-over without evaporation", "beyond the properties", "properties from composition", "fat that melts", "conductivity scatter", "thick food may flow", "layers touch perfectly",
 	"step did not reach its temperature", "step ended by the model"}
 
 // Cautions lists what applies to a product: first the reservations of this table, then those that its findings carry.
@@ -268,6 +270,33 @@ func freezing(h *Head, p *Product, calculated bool) ([]any, bool) {
 		}
 	}
 	return nil, false
+}
+
+// muchFatPc is how much fat, %, is worth a number (our own judgement).
+const muchFatPc = 10
+
+// fatty: a food with much fat that passes, by more than 5 K, temperatures at which fat melts; of several the one with most.
+func fatty(h *Head, p *Product) ([]any, bool) {
+	if p.History == nil || p.History.Recorded {
+		return nil, false
+	}
+	var most *model.Material
+	for _, m := range p.Product.Foods() {
+		if m.Composed && m.FatPc >= muchFatPc && (most == nil || m.FatPc > most.FatPc) {
+			most = m
+		}
+	}
+	low, high := math.Inf(1), math.Inf(-1)
+	for i := range p.Samples.Coldest {
+		low, high = min(low, p.Samples.Coldest[i]), max(high, p.Samples.Hottest[i])
+	}
+	if most == nil || min(high, 40)-max(low, 0) <= 5 {
+		return nil, false
+	}
+	const leastJg, mostJg = 100.0, 180.0 // from memory
+	heat := func(jg float64) float64 { return most.FatPc / 100 * jg * 1000 }
+	inK := heat(mostJg) / most.Props(20).CJkgK
+	return []any{most.Name, plain(most.FatPc, 0, nearest), plain(heat(leastJg)/1000, 0, nearest), plain(heat(mostJg)/1000, 0, nearest), h.difference(inK, nearest)}, true
 }
 
 // touching: layers between which no contact resistance was given.

@@ -95,6 +95,18 @@ func TestCautions(t *testing.T) {
 		{"composed, with a second run", func(_ *Head, p *Product) {
 			p.Product.Food.Composed, p.Further = true, []rules.Run{{Name: rules.LowConductivity, History: p.History}}
 		}, "properties from composition, conductivity scatter, " + always, "±15 %"},
+		{"composed, with much fat", func(_ *Head, p *Product) {
+			p.Product.Food.Composed, p.Product.Food.FatPc = true, 33.31
+			p.Product.Food.Props = func(float64) model.Properties { return model.Properties{CJkgK: 2700} }
+		}, "properties from composition, fat that melts, " + always, "The food mash holds 33 % of fat, which takes 33 to 60 kJ"},
+		{"composed, with much fat that stays melted", func(_ *Head, p *Product) {
+			p.Product.Food.Composed, p.Product.Food.FatPc = true, 33.31
+			p.Samples.Coldest = []float64{58, 70, 36}
+		}, "properties from composition, " + always, ""},
+		{"composed, with 9 % of fat", func(_ *Head, p *Product) { p.Product.Food.Composed, p.Product.Food.FatPc = true, 9 }, "properties from composition, " + always, ""},
+		{"beyond boiling throughout", func(_ *Head, p *Product) { p.History.Boils = true }, "boiling throughout, " + always, "hotter than boiling water"},
+		{"beyond the properties", func(_ *Head, p *Product) { p.History.Beyond = true }, "beyond the properties, " + always, "−40 to 150 °C"},
+		{"a warning of something else", func(_ *Head, p *Product) { p.History.Warnings = cell.Errors{{Msg: "is over at once"}} }, always, ""},
 		{"thick food", func(_ *Head, p *Product) {
 			p.Further = []rules.Run{{Name: rules.WellMixed, History: p.History}}
 		}, "thick food may flow, " + always, "as well mixed"},

@@ -204,7 +204,7 @@ func TestProductPDF(t *testing.T) {
 			for i := range p.Judgement.Findings {
 				p.Judgement.Findings[i].Run = rules.WellMixed
 			}
-		}, []string{"(run as well mixed)", "The food may mix by itself while it is hot", "the run as conducting", "the food as well mixed (anywhere: it is stirred)"}},
+		}, []string{"(run as well mixed)", "The food may mix by itself while it is hot", "the run as conducting", "the food as well mixed (anywhere: one temperature throughout)"}},
 		{"accents, emoji and Chinese", model.Slab, rules.Met, func(h *Head, p *Product) {
 			p.Product.Name = "Crème brûlée Żurek Щи Σούπα 🍗 红烧肉\u0007"
 		}, []string{"Crème brûlée Żurek Щи Σούπα", "U+1F357", "U+70E7", "U+7EA2", "U+8089"}},

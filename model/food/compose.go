@@ -142,6 +142,7 @@ func Compose(name, source string, c Composition) (model.Material, error) {
 		Composed:    true,
 		Composition: c.String(),
 		Waterless:   c.WaterPc == 0,
+		FatPc:       100 * c.FatPc / c.SumPc(),
 	}
 	if c.PoresJoin {
 		material.Source += poresMethod

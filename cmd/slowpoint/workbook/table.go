@@ -596,9 +596,28 @@ func (l *Line) likely(c *Column, v unit.Value) {
 	if c.OfMedium != nil && Key(l.Entry("Where").Text) == "medium" {
 		usual = c.OfMedium
 	}
-	if usual.outside(v.Computed) {
+	if usual.outside(v.Computed) && !(metal[c.Heading] != nil && l.metallic()) {
 		l.Remark(cell.Warning, c.Heading, v.Typed, unusual, c.shown(v.Computed), c.between(usual), c.slipped(v))
 	}
+}
+
+// metal is what three columns of Foods hold of a tin or a tray that is a layer: aluminium, steel, copper (any textbook). Each of them alone is
+// unusual for a food; together they are no slip.
+var metal = map[string]*span{"Conductivity": {10, 430}, "Density": {2500, 9000}, "Specific heat": {350, 1000}}
+
+// metallic tells whether a row of Foods holds a metal.
+func (l *Line) metallic() bool {
+	for heading, range_ := range metal {
+		c, e := l.t.sheet.Column(heading), l.Entry(heading)
+		h := l.t.place[heading]
+		if c == nil || h == nil || h.unit == nil || e.Kind == Blank {
+			return false
+		}
+		if v, no := c.value(e, l.t.grid, h.unit, l.r.decimal); no != nil || range_.outside(v.Computed) {
+			return false
+		}
+	}
+	return true
 }
 
 // shown words a computed number in the unit of the blank workbook.
