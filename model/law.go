@@ -50,17 +50,34 @@ func newLaw(m *Material, factor float64) *law {
 		p := m.Props(max(l.lowC, min(c, top)))
 		return p.KWmK * factor, p.RhoKgM3 * p.CJkgK
 	}
-	if m.FreezingC != nil && m.EnthalpyJkg != nil {
+	switch {
+	case m.FreezingC != nil && m.EnthalpyJkg != nil:
 		l.zeroC = *m.FreezingC
 		rho := m.Props(l.zeroC).RhoKgM3
 		base := m.EnthalpyJkg(l.zeroC)
 		l.cold = tabulate(l.zeroC, min(l.lowC, l.zeroC-1), 256, props, func(c float64) float64 { return rho * (m.EnthalpyJkg(c) - base) })
-	} else {
-		l.cold = tabulate(l.zeroC, coldestC, 64, props, nil)
+		l.warm = tabulate(l.zeroC, hottestC, 192, props, nil)
+	case constant(m):
+		l.cold, l.warm = tabulate(l.zeroC, coldestC, 1, props, nil), tabulate(l.zeroC, hottestC, 1, props, nil)
+	default:
+		l.cold, l.warm = tabulate(l.zeroC, coldestC, 64, props, nil), tabulate(l.zeroC, hottestC, 192, props, nil)
 	}
-	l.warm = tabulate(l.zeroC, hottestC, 192, props, nil)
 	l.byU = l.readByU()
 	return l
+}
+
+// constant tells whether a food has the same properties at all temperatures: its law is straight, and one row is all of it.
+func constant(m *Material) bool {
+	if m.LowC != 0 || m.HighC != 0 || m.Table || m.EnthalpyJkg != nil {
+		return false
+	}
+	p := m.Props(0)
+	for c := float64(coldestC); c <= hottestC; c += 9 {
+		if m.Props(c) != p {
+			return false
+		}
+	}
+	return true
 }
 
 // knotsOf spaces temperatures from one end of a piece to the other: close where a food thaws.
@@ -75,9 +92,12 @@ func knotsOf(from, to float64) []float64 {
 	}
 }
 
-// tabulate makes a piece from zeroC to endC. heat gives the heat content where a formula for it exists; else ρc is integrated.
+// tabulate makes a piece from zeroC to endC, in one row where the properties are constant. heat gives the heat content where a formula for it exists; else ρc is integrated.
 func tabulate(zeroC, endC float64, rows int, props func(c float64) (k, rhoC float64), heat func(c float64) float64) piece {
-	at := knotsOf(zeroC, endC)
+	at := []float64{zeroC, endC}
+	if rows > 1 {
+		at = knotsOf(zeroC, endC)
+	}
 	h, u := make([]float64, len(at)), make([]float64, len(at))
 	down := endC < zeroC
 	inside := func(c float64) float64 { // the properties on this side of the freezing point, where they jump
