@@ -52,7 +52,7 @@ type correlation struct {
 var (
 	freeCylinder = correlation{name: "Churchill & Chu 1975 (horizontal cylinder in still air, Rayleigh number up to 1e12)", nusselt: churchillChu, perK: churchillChuPerK, by: churchillChuBy, most: 1e12}
 	freeSphere   = correlation{name: "Churchill 1983 (sphere in still air, Rayleigh number up to 1e13)", nusselt: sphereFree, perK: sphereFreePerK, by: sphereFreeBy, most: 1e13}
-	freeLayered  = correlation{name: "McAdams 1954 (horizontal plate, cold face up or warm face down in still air, Rayleigh number up to 1e10)"}
+	freeLayered  = correlation{name: "McAdams 1954 (horizontal plate, cold face up or warm face down in still air, Rayleigh number up to 1e10)", nusselt: plateLayered, most: 1e10}
 
 	forcedCylinder = correlation{name: "Churchill & Bernstein 1977 (cylinder in cross flow, Reynolds × Prandtl number from 0.2, Reynolds number up to 1e7)", nusselt: churchillBernstein,
 		least: func(pr float64) float64 { return 0.2 / pr }, most: 1e7, held: "whose value there is kept, which is low"}
@@ -97,9 +97,8 @@ func churchillChuBy(b, _, differenceK float64) float64 {
 }
 
 // plateLayered is the Nusselt number of a horizontal plate on which air lies in layers: its cold face up or its warm face down, on area by
-// edge, 1e5 < Ra < 1e10 (McAdams, Heat Transmission, 1954; in Incropera & DeWitt). A slab of openWidthM stays below the upper end; below the
-// lower end the film is low.
-func plateLayered(ra float64) float64 { return 0.27 * math.Sqrt(math.Sqrt(ra)) }
+// edge, 1e5 < Ra < 1e10 (McAdams, Heat Transmission, 1954; in Incropera & DeWitt). Below the lower end the film is low.
+func plateLayered(ra, _ float64) float64 { return 0.27 * math.Sqrt(math.Sqrt(ra)) }
 
 // sphereFree is the Nusselt number of a sphere in still fluid, on its diameter, Ra < 1e13
 // (Churchill 1983, Heat Exchanger Design Handbook, section 2.5.7; section from memory).

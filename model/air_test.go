@@ -46,7 +46,7 @@ func TestCorrelations(t *testing.T) {
 		{"flat plate beyond the laminar range, the laminar formula as a lower bound, Re 1e6, Pr 0.71: 0.664·1000·0.8921", plateForced(1e6, 0.71), 592.4},
 		{"sphere at the end of the range, Re 50000, Pr 0.71: 2+0.47·223.61·0.8840", sphereForced(5e4, 0.71), 94.90},
 		{"sphere in a stream, Re 2500, Pr 0.71: 2+0.47·50·0.8840", sphereForced(2500, 0.71), 22.774},
-		{"plate with its cold face up, Ra 5e6: 0.27·47.287", plateLayered(5e6), 12.767},
+		{"plate with its cold face up, Ra 5e6: 0.27·47.287", plateLayered(5e6, 0.71), 12.767},
 		{"sphere in still air, Ra 1e5, Pr 0.71: 2+0.589·17.783/1.2959·1.0002", sphereFree(1e5, 0.71), 10.084},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -102,7 +102,7 @@ func TestCorrelationsAtTenNumbers(t *testing.T) {
 			{3e5, 10.424211}, {5e6, 23.051674}, {8e7, 52.838572}, {2e9, 144.09252}, {6e11, 906.35024}}},
 		{"Churchill 1983, sphere", sphereFree, [10][2]float64{{0.1, 2.255579}, {1, 2.4544909}, {50, 3.2085587}, {1e3, 4.5557958}, {2e4, 7.4050757},
 			{3e5, 12.643654}, {5e6, 23.714563}, {8e7, 49.24569}, {2e9, 135.96228}, {9e12, 2210.211}}},
-		{"McAdams 1954, horizontal plate, cold face up", func(ra, _ float64) float64 { return plateLayered(ra) }, [10][2]float64{{1e5, 4.8013544}, {3e5, 6.3189378}, {1e6, 8.5381497}, {5e6, 12.767512}, {2e7, 18.055988},
+		{"McAdams 1954, horizontal plate, cold face up", plateLayered, [10][2]float64{{1e5, 4.8013544}, {3e5, 6.3189378}, {1e6, 8.5381497}, {5e6, 12.767512}, {2e7, 18.055988},
 			{8e7, 25.535023}, {3e8, 35.533998}, {1e9, 48.013544}, {4e9, 67.901405}, {9e9, 83.161898}}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -150,6 +150,48 @@ func TestCorrelationsKeepToTheirRanges(t *testing.T) {
 				t.Errorf("says %q, want %q", got, c.says)
 			}
 		})
+	}
+}
+
+// Above the range of its correlation a film keeps the value at the end of it, whatever the difference or the speed, and that is said. The ends:
+// Churchill & Bernstein 1977, Reynolds number 1e7; Churchill & Chu 1975, Rayleigh number 1e12; Churchill 1983 (sphere), 1e13; McAdams 1954
+// (plate with its cold face up or warm face down, on area by edge), 1e10.
+func TestFilmsKeepTheEndOfTheirRange(t *testing.T) {
+	huge := func(moving bool, shape *Shape, face *Face, m, airMS float64) *airFilm {
+		f := newAirFilm(moving, &filmCase{shape: shape, size: Size{DiameterM: m}, face: face, mediumC: 4, airMS: airMS})
+		f.lengthM = m // a slab's own size stays within the range
+		return f
+	}
+	for _, c := range []struct {
+		name           string
+		film           *airFilm
+		surfaceC, airC float64
+		nusselt        func(x, pr float64) float64
+		end, lengthM   float64
+		says           string
+	}{
+		{"a gale over a long joint", huge(true, Cylinder, nil, 9, 27), 4, 4, churchillBernstein, 1e7, 9, "is above the range of Churchill & Bernstein 1977"},
+		{"a long body in still air", huge(false, Cylinder, nil, 9, 0), 250, 4, churchillChu, 1e12, 9, "is above the range of Churchill & Chu 1975"},
+		{"a ball in still air", huge(false, Sphere, nil, 17, 0), 91, 4, sphereFree, 1e13, 17, "is above the range of Churchill 1983"},
+		{"warm face down", huge(false, Slab, Underside, 9, 0), 73, 4, plateLayered, 1e10, 9.0 / 4, "is above the range of McAdams 1954"},
+		{"cold face up", huge(false, Slab, Top, 9, 0), 3, 70, plateLayered, 1e10, 9.0 / 4, "is above the range of McAdams 1954"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			a := airAt((c.surfaceC+c.airC)/2, 0)
+			want := c.nusselt(c.end, a.pr()) * a.k / c.lengthM
+			got := c.film.at(c.surfaceC, c.airC)
+			now, _ := c.film.which(c.surfaceC, c.airC)
+			if math.Abs(got-want) > 1e-6*want || math.Abs(now-want) > 1e-9*want {
+				t.Errorf("%.7g W/(m²·K), by the formulas %.7g, at the end of the range %.7g", got, now, want)
+			}
+			low, high := min(c.surfaceC, c.airC), max(c.surfaceC, c.airC)
+			if says := c.film.beyond(low, high, c.airC); !strings.Contains(says, c.says) || strings.Contains(says, ";") {
+				t.Errorf("says %q, want %q alone", says, c.says)
+			}
+		})
+	}
+	if says := newAirFilm(false, &filmCase{shape: Slab, face: Top}).beyond(-30, 90, 90); says != "" {
+		t.Errorf("a tray says %q", says)
 	}
 }
 

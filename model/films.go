@@ -61,6 +61,7 @@ type airNode struct {
 	b, d    float64 // of free convection, by the difference in K: see freeBy
 	mostK   float64 // difference at which free convection leaves its range
 	layerW  float64 // film of air that lies still in layers, at a difference of 1 K; 0 if none counts
+	layerK  float64 // difference at which such a film leaves its range
 	forcedW float64 // film of forced convection, W/(m²·K); 0 if none counts
 }
 
@@ -118,10 +119,17 @@ func (f *airFilm) layered(surfaceC, airC float64) bool {
 	return f.lies == Top && surfaceC < airC || f.lies == Underside && surfaceC > airC
 }
 
-// layer is the film of air that lies in layers, W/(m²·K); a plate's length is its area by its edge, a quarter of the side of a square one.
+// plateSide is a plate's length, its area by its edge, as a share of the side of a square one.
+const plateSide = 1.0 / 4
+
+// layer is the film of air that lies in layers, W/(m²·K).
 func (f *airFilm) layer(a *air, differenceK float64) float64 {
-	const side = 1.0 / 4
-	return plateLayered(f.rayleigh(a, differenceK)*side*side*side) * a.k / (f.lengthM * side)
+	return freeLayered.nusselt(min(f.layerRayleigh(a, differenceK), freeLayered.most), a.pr()) * a.k / (f.lengthM * plateSide)
+}
+
+// layerRayleigh is the Rayleigh number on a plate's length.
+func (f *airFilm) layerRayleigh(a *air, differenceK float64) float64 {
+	return f.rayleigh(a, differenceK) * plateSide * plateSide * plateSide
 }
 
 // at gives the film in W/(m²·K), with the air at the mean of surface and medium.
@@ -147,10 +155,11 @@ func (f *airFilm) at(surfaceC, airC float64) float64 {
 		n.d += w * near[j].d
 		n.mostK += w * near[j].mostK
 		n.layerW += w * near[j].layerW
+		n.layerK += w * near[j].layerK
 		n.forcedW += w * near[j].forcedW
 	}
 	if f.layered(surfaceC, airC) {
-		return max(n.layerW*math.Sqrt(math.Sqrt(math.Abs(surfaceC-airC))), n.forcedW)
+		return max(n.layerW*math.Sqrt(math.Sqrt(min(math.Abs(surfaceC-airC), n.layerK))), n.forcedW)
 	}
 	return max(n.kL*f.free.by(n.b, n.d, min(math.Abs(surfaceC-airC), n.mostK)), n.forcedW)
 }
@@ -162,7 +171,7 @@ func (f *airFilm) ready(n *airNode, tC float64) {
 	*n = airNode{ready: true, kL: a.k / f.lengthM, mostK: f.free.most / ra}
 	n.b, n.d = f.free.perK(ra, a.pr())
 	if f.lies != nil {
-		n.layerW = f.layer(&a, 1)
+		n.layerW, n.layerK = f.layer(&a, 1), freeLayered.most/f.layerRayleigh(&a, 1)
 	}
 	if f.forced != nil {
 		n.forcedW = f.forced.nusselt(f.reynolds(&a), a.pr()) * n.kL
@@ -207,9 +216,24 @@ func (f *airFilm) beyond(lowC, highC, airC float64) string {
 	if f.forced != nil && f.reynolds(&cold) > f.forced.most {
 		add("Reynolds number %.2g is above the range of %s (%.2g), %s", f.reynolds(&cold), f.forced.name, f.forced.most, f.forced.held)
 	}
-	if ra := max(f.rayleigh(&cold, lowC-airC), f.rayleigh(&hot, highC-airC)); ra > f.free.most {
-		add("Rayleigh number %.2g is above the range of %s (%.2g), whose value there is kept, which is low", ra, f.free.name, f.free.most)
+	above := func(ra float64, free *correlation) {
+		if ra > free.most {
+			add("Rayleigh number %.2g is above the range of %s (%.2g), whose value there is kept, which is low", ra, free.name, free.most)
+		}
 	}
+	rises, lies := 0.0, 0.0 // the largest Rayleigh number of air that moves over the face, and of air in layers on it
+	for _, end := range []struct {
+		a        *air
+		surfaceC float64
+	}{{&cold, lowC}, {&hot, highC}} {
+		if f.layered(end.surfaceC, airC) {
+			lies = max(lies, f.layerRayleigh(end.a, end.surfaceC-airC))
+		} else {
+			rises = max(rises, f.rayleigh(end.a, end.surfaceC-airC))
+		}
+	}
+	above(rises, f.free)
+	above(lies, &freeLayered)
 	if (lowC+airC)/2 < airLowC || (highC+airC)/2 > airHighC {
 		add("air properties are known from %d to %d °C (mean of surface and air); below, those of the low end are taken, above, the formulas go on", airLowC, airHighC)
 	}
