@@ -45,16 +45,17 @@ func Check(p Product, steps []Step) cell.Errors {
 // exposures gives the different surroundings of a step that the shape has a face for.
 func exposures(s *Shape, st *Step) []*Exposure {
 	left := false // a face that keeps the step's own surroundings
-	out := make([]*Exposure, 1, 1+len(s.Faces))
+	faces := s.Faces()
+	out := make([]*Exposure, 1, 1+len(faces))
 	out[0] = &st.Exposure
-	for _, f := range s.Faces {
+	for _, f := range faces {
 		if e := st.on(f); e == &st.Exposure {
 			left = true
 		} else {
 			out = append(out, e)
 		}
 	}
-	if left || len(s.Faces) == 0 {
+	if left || len(faces) == 0 {
 		return out
 	}
 	return out[1:]
@@ -95,7 +96,7 @@ func (c *checker) shape() {
 			whole = false
 		}
 	}
-	if whole && p.Shape == Spheroid {
+	if whole && p.Shape.Oval() {
 		c.spheroid()
 	}
 }
@@ -121,7 +122,7 @@ func (c *checker) spheroid() {
 func (c *checker) food() {
 	p := c.product
 	switch {
-	case p.Shape == LayeredSlab:
+	case p.Shape.Layered():
 		c.layers()
 	case p.Food == nil && p.Shape.Refused == "":
 		c.add(p.At, "Food", "", "no food is given", "type the name of a built-in food or of a row of Foods")
@@ -173,7 +174,7 @@ func (c *checker) foodAt(f *Material, row cell.Ref) {
 		return flow.Name
 	}
 	says, instead := "", "use the shape stirred if it is stirred all the time, or judge a probe record"
-	if f.Flow == FlowsYes && p.Shape != LayeredSlab {
+	if f.Flow == FlowsYes && !p.Shape.Layered() {
 		where := "here"
 		if field == "Food" {
 			where = "in the column Flows of a row \"" + f.Name + "\" of the sheet Foods (with a Source and nothing else)"
@@ -187,14 +188,14 @@ func (c *checker) foodAt(f *Material, row cell.Ref) {
 	if f.SetForm != "" {
 		instead = "once it is set, the built-in food is " + f.SetForm + "; else " + instead
 	}
-	if p.Shape == Stirred {
+	if p.Shape.Mixed() {
 		c.mixes()
 		return
 	}
 	switch {
 	case f.Flow == FlowsYes:
 		c.add(at, field, typed(f.Flow), says+"mixes by itself when left still; conduction does not describe that", instead)
-	case f.Flow == FlowsThick && p.Shape == LayeredSlab: // of other shapes a second run takes it as well mixed
+	case f.Flow == FlowsThick && p.Shape.Layered(): // of other shapes a second run takes it as well mixed
 		c.add(at, field, typed(f.Flow), says+"may mix by itself while it is hot; conduction alone does not describe that, and a layer cannot be taken as well mixed", instead)
 	}
 	if f.freezes() || f.Waterless {
@@ -216,7 +217,7 @@ func (c *checker) mixes() {
 	if p.Food.At.IsZero() {
 		known = "as a built-in food"
 	}
-	c.found.Add(cell.Error{At: p.At, Level: cell.Warning, Field: "Shape", Typed: Stirred.Name,
+	c.found.Add(cell.Error{At: p.At, Level: cell.Warning, Field: "Shape", Typed: p.Shape.Name,
 		Msg:  fmt.Sprintf("gives all of the food one temperature, but %s is solid or set (%s): the inside of a piece lags behind what is shown, in heating and in chilling", p.Food.Name, known),
 		Hint: "choose the shape of the piece, with its sizes; if it is thin enough to be stirred all the time, say so by thick or yes in the column Flows of a row of Foods"})
 }
@@ -234,34 +235,10 @@ func (c *checker) points() {
 				c.add(pt.At, name, fmt.Sprintf("%g mm", 1000*got[i]), fmt.Sprintf("the point %s lies outside the food, which reaches %g mm from its centre in this direction", pt.Name, 1000*half[i]), "measure from the geometric centre")
 			}
 		}
-		if p.Shape == Spheroid && got[0] <= half[0]+roundingM && got[1] <= half[1]+roundingM && math.Hypot(got[0]/half[0], got[1]/half[1]) > 1+roundingM/min(half[0], half[1]) {
+		if p.Shape.Oval() && got[0] <= half[0]+roundingM && got[1] <= half[1]+roundingM && math.Hypot(got[0]/half[0], got[1]/half[1]) > 1+roundingM/min(half[0], half[1]) {
 			c.add(pt.At, "Across", fmt.Sprintf("%g mm", 1000*got[1]), fmt.Sprintf("the point %s lies outside the food: %g mm up, the spheroid reaches %.1f mm across", pt.Name, 1000*got[0], 1000*half[1]*math.Sqrt(max(0, 1-math.Pow(got[0]/half[0], 2)))), "measure from the geometric centre")
 		}
 	}
-}
-
-// reach is how far the food extends from its centre up, across and along, m. A slab has no end across and along.
-func reach(p *Product) [3]float64 {
-	z := &p.Size
-	switch p.Shape {
-	case Slab:
-		return [3]float64{z.ThicknessM / 2, math.Inf(1), math.Inf(1)}
-	case Cylinder:
-		return [3]float64{z.DiameterM / 2, 0, math.Inf(1)}
-	case Sphere:
-		return [3]float64{z.DiameterM / 2, 0, 0}
-	case ShortCylinder:
-		return [3]float64{z.LengthM / 2, z.DiameterM / 2, 0}
-	case Bar:
-		return [3]float64{z.ThicknessM / 2, z.WidthM / 2, math.Inf(1)}
-	case Brick:
-		return [3]float64{z.ThicknessM / 2, z.WidthM / 2, z.LengthM / 2}
-	case Spheroid:
-		return [3]float64{z.ThicknessM / 2, z.DiameterM / 2, 0}
-	case LayeredSlab:
-		return [3]float64{z.ThicknessM / 2, math.Inf(1), math.Inf(1)}
-	}
-	return [3]float64{math.Inf(1), math.Inf(1), math.Inf(1)}
 }
 
 func (c *checker) step(st *Step) {
@@ -286,7 +263,7 @@ func (c *checker) step(st *Step) {
 	}
 	for _, f := range st.Faces {
 		known := false
-		for _, g := range c.product.Shape.Faces {
+		for _, g := range c.product.Shape.Faces() {
 			known = known || g == f.Face
 		}
 		if !known {
@@ -342,22 +319,23 @@ const boilsWithinK = 0.5
 
 // water looks for water and steam at temperatures that they do not have in the open.
 func (c *checker) water(st *Step, e *Exposure, field string, low, high float64) {
-	if e.Surface != BoilingWater && e.Surface != WaterBath && e.Surface != StirredWater && e.Surface != Steam {
+	steam, boils := e.Surface.meets == vapour, e.Surface.meets == waterAtBoil
+	if !steam && !boils && !e.Surface.Water() {
 		return
 	}
 	b := boilingC(st.AltitudeM)
 	typed := func(x float64) string { return fmt.Sprintf("%g °C", x) }
 	if high > b+boilsWithinK {
 		hint := "type the temperature of the water at your altitude (Plan item Altitude)"
-		if e.Surface == Steam {
+		if steam {
 			hint = "steam under pressure is outside this program; if the air in an oven is meant, use moving air with its relative humidity"
 		}
 		c.add(e.At, field, typed(high), fmt.Sprintf("water boils at %.1f °C at %g m above the sea", b, st.AltitudeM), hint)
 	}
 	switch {
-	case e.Surface == BoilingWater && low < b-boilingLeastK:
+	case boils && low < b-boilingLeastK:
 		c.add(e.At, field, typed(low), fmt.Sprintf("boiling water is at %.1f °C at %g m above the sea", b, st.AltitudeM), "use water bath or stirred water for water that does not boil")
-	case e.Surface == Steam && low < steamLeastC:
+	case steam && low < steamLeastC:
 		c.add(e.At, field, typed(low), fmt.Sprintf("steam heats; nothing below %g °C is taken as steam", float64(steamLeastC)), "use moving air or still air for air, water bath or stirred water for water")
 	}
 }
@@ -371,7 +349,7 @@ const (
 
 // vapour looks for air that holds more vapour than the pressure around it allows.
 func (c *checker) vapour(st *Step, e *Exposure) {
-	if !e.inAir() && e.Surface != Steam {
+	if !e.inAir() && e.Surface.meets != vapour {
 		return
 	}
 	total := pressurePa(st.AltitudeM)
@@ -414,7 +392,7 @@ func (c *checker) radiation(e *Exposure) {
 		field, typed = "Radiating temperature", fmt.Sprintf("%g °C", *e.RadiatingC)
 	}
 	switch {
-	case e.Surface == Film:
+	case e.Surface.FilmTyped():
 		c.add(e.At, field, typed, "with the surroundings film the coefficient stands for everything that happens at the surface, radiation too",
 			"use still air or moving air; the column Film coefficient is then for convection alone, and radiation is added")
 	case !e.inAir():
@@ -447,14 +425,14 @@ func (c *checker) moisture(e *Exposure) {
 		c.found.Add(cell.Error{At: e.At, Level: cell.Warning, Field: "Relative humidity", Typed: fmt.Sprintf("%g %%", *e.RH),
 			Msg: fmt.Sprintf("is less than one per cent; if a share is meant it is %g %%", 100**e.RH), Hint: "type per cent"})
 	}
-	if e.Surface == Steam && e.FilmW != nil && (e.RH != nil || e.Medium.RH != nil) {
+	if e.Surface.meets == vapour && e.FilmW != nil && (e.RH != nil || e.Medium.RH != nil) {
 		c.add(e.At, "Film coefficient", fmt.Sprintf("%g W/m²·K", *e.FilmW), "steam with a relative humidity has a film of its own, by the air in it, and a typed film stands for everything", "leave out one of the two")
 	}
 	if !e.wet() {
 		return
 	}
 	switch {
-	case e.Surface == Film:
+	case e.Surface.FilmTyped():
 		c.add(e.At, "Surface", "wet", "with the surroundings film the coefficient stands for everything that happens at the surface, evaporation too",
 			"use still air or moving air; the column Film coefficient is then for convection alone, and evaporation is calculated")
 	case !e.inAir():

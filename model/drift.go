@@ -37,7 +37,7 @@ func Drifted(p *Product, steps []Step, ran *History, moist bool) (out []Step, ok
 
 // drift takes what an exposure leaves open so that food of foodC drifts fastest, and tells whether anything was left open.
 func (e *Exposure) drift(foodC, durationS float64, moist bool) (open bool) {
-	if e.Surface == WaterBath || e.Surface == StirredWater {
+	if e.Surface.Water() {
 		if e.FilmW != nil {
 			return false
 		}

@@ -250,7 +250,7 @@ func (of *settlingOf) drive(e *settles, axis, side int) drive {
 	if side < 0 {
 		face = s.faces[axis][0]
 	}
-	d := drive{axis: axis, side: side, exact: !s.marches() && s.ball == nil && s.product.Shape != LayeredSlab, film: [2]float64{math.Inf(1), 0}}
+	d := drive{axis: axis, side: side, exact: !s.marches() && s.ball == nil && !s.product.Shape.Layered(), film: [2]float64{math.Inf(1), 0}}
 	differ, flow := extent{math.Inf(1), math.Inf(-1)}, extent{math.Inf(1), math.Inf(-1)}
 	for m := of.since; m <= of.now; m++ {
 		x := s.steps[m].on(face)
@@ -509,7 +509,7 @@ func (e *settles) answered(s *solver, d *drive, x, tau float64) (a answer) {
 	}
 	if bentRoot := math.Sqrt(e.alpha[1] * (tau + 3*e.backS + s.settle)); e.bentK > 0 {
 		a.bend = min(1, 4*math.Erfc(depth/(2*bentRoot)))
-		if s.product.Shape == LayeredSlab {
+		if s.product.Shape.Layered() {
 			a.bend = min(1, 2*e.throughLayers(s, &drive{side: d.side, film: held}, depth, bentRoot))
 		}
 	}
@@ -523,7 +523,7 @@ func (e *settles) answered(s *solver, d *drive, x, tau float64) (a answer) {
 	case s.kinds[d.axis] == radial:
 		a.most = d.inSphere(r, math.Abs(x), d.film[1], root[1])
 		a.least = d.flat(depth, d.film[0], root[0])
-	case s.product.Shape == LayeredSlab:
+	case s.product.Shape.Layered():
 		a.most = e.throughLayers(s, d, depth, root[1])
 		if d.side == 0 {
 			a.most += e.throughLayers(s, d, far, root[1])

@@ -45,7 +45,7 @@ const (
 )
 
 // polynomial tells whether the march has polynomials in space: smooth fields.
-func (s *solver) polynomial() bool { return s.used > 0 && !s.front && s.product.Shape != LayeredSlab }
+func (s *solver) polynomial() bool { return s.used > 0 && !s.front && !s.product.Shape.Layered() }
 
 // marchGoalK is the error that a march is to keep, K.
 const marchGoalK = 0.019
@@ -86,7 +86,7 @@ func (s *solver) firstEffort() (e effort, worse float64) {
 			}
 		}
 		return e, volumesWorse
-	case s.product.Shape == Spheroid:
+	case s.product.Shape.Oval():
 		e.more, e.tolK = 1.3, 4e-3
 		return e, stagesWorse
 	case s.wetFaces():

@@ -3,7 +3,6 @@ package model
 import (
 	"fmt"
 	"math"
-	"slices"
 	"strings"
 )
 
@@ -17,28 +16,6 @@ type filmCase struct {
 	mediumC   float64
 	airMS     float64
 	altitudeM float64
-}
-
-// openWidthM stands for the width and length that a slab does not give: a large tray, so that films come out low.
-const openWidthM = 0.5
-
-// lengthM is the size across the air. A body of three sizes lies across it with its middle one, as the cylinder formulas take it: the
-// diameter of a long joint, the middle edge of a block, the diameter of a flat tin.
-func (c *filmCase) lengthM() float64 {
-	z := c.size
-	switch c.shape {
-	case Slab, LayeredSlab:
-		return openWidthM
-	case Stirred: // the cube of the same volume
-		return math.Cbrt(z.VolumeM3)
-	case Cylinder, Sphere, ShortCylinder, Spheroid: // round ones have their diameter twice
-		return z.DiameterM
-	case Bar: // endless: the larger of two
-		return max(z.ThicknessM, z.WidthM)
-	}
-	sizes := []float64{z.ThicknessM, z.WidthM, z.LengthM}
-	slices.Sort(sizes)
-	return sizes[1]
 }
 
 func (c *filmCase) at() string {
@@ -68,33 +45,18 @@ type airNode struct {
 // Air nodes: 4 K apart, so that a cubic through four of them is within 1e-7 of the formulas.
 const airNodesFromC, airNodeK, airNodes = -48, 4, 100
 
-// longSpheroid is the length by diameter from which a spheroid takes the cylinder's film in a stream: from there on Yovanovich's formula for
-// spheroids (AIAA paper 88-0743, 1988; from memory) gives as much within 8 %. Rounder ones take the sphere's film, which is lower.
-const longSpheroid = 1.5
-
 // newAirFilm takes the correlations that fit a case. Whether the air is too slow for the forced one is decided by the air alone, so that
 // the film does not jump while the surface warms.
 func newAirFilm(moving bool, c *filmCase) *airFilm {
-	f := &airFilm{lengthM: c.lengthM(), totalPa: pressurePa(c.altitudeM), free: &freeCylinder}
-	if c.shape == Sphere {
-		f.free = &freeSphere
-	}
-	if c.shape == Slab || c.shape == LayeredSlab {
+	free, forced := c.shape.inAir(&c.size)
+	f := &airFilm{lengthM: c.shape.acrossAirM(&c.size), totalPa: pressurePa(c.altitudeM), free: free, nodes: make([]airNode, airNodes)}
+	if c.shape.flat() {
 		f.lies = c.face
 	}
-	f.nodes = make([]airNode, airNodes)
 	if !moving {
 		return f
 	}
-	f.airMS = c.airMS
-	switch {
-	case c.shape == Slab || c.shape == LayeredSlab:
-		f.forced = &forcedPlate
-	case c.shape == Sphere || c.shape == Spheroid && c.size.ThicknessM < longSpheroid*c.size.DiameterM:
-		f.forced = &forcedSphere
-	default:
-		f.forced = &forcedCylinder
-	}
+	f.airMS, f.forced = c.airMS, forced
 	if a := airOf(c.mediumC, f.totalPa); f.reynolds(&a) < f.forced.least(a.pr()) {
 		f.below, f.forced = f.forced, nil
 	}
@@ -274,16 +236,15 @@ func (e *Exposure) filmFactor() float64 {
 func (e *Exposure) filmUsed(face *Face, c *filmCase) FilmUsed {
 	u := FilmUsed{Face: face}
 	switch {
-	case e.Surface == Insulated:
+	case e.Surface.NoMedium:
 		u.Source = "no heat passes"
 		return u
 	case e.FilmW != nil:
 		u.FilmW, u.Typed = *e.FilmW, true
 		u.Source = "typed by the user: it stands for everything that happens at the surface"
-	case e.Surface == Held:
-		u.FilmW, u.Source = math.Inf(1), "the surface is kept at the temperature"
-	case e.Surface == ContactPlate:
-		u.FilmW, u.Typed, u.Source = math.Inf(1), true, "contact resistance typed by the user"
+	case e.Surface.Fixed():
+		u.FilmW, u.Source = e.Surface.film(c)
+		u.Typed = len(e.Surface.Needs) > 0
 	default:
 		u.FilmW, u.Source = e.Surface.film(c)
 		u.FilmW *= e.filmFactor()

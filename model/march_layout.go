@@ -10,9 +10,9 @@ func (s *solver) newMarched(e effort) *marched {
 		f.track.data = s.tmp.rough
 	}
 	switch {
-	case s.product.Shape == Spheroid && s.front:
+	case s.product.Shape.Oval() && s.front:
 		s.layShells(f, laws[0], e)
-	case s.product.Shape == Spheroid:
+	case s.product.Shape.Oval():
 		s.layRound(f, laws[0], e)
 	case s.used > 1 || s.polynomial():
 		s.laySpace(f, laws[0], e)
@@ -35,7 +35,7 @@ func (s *solver) layLine(f *marched, laws []*law, e effort) {
 		kind, r = lumped, s.product.Size.VolumeM3/s.product.Size.AreaM2
 	}
 	kinds := s.kinds
-	if s.product.Shape == LayeredSlab {
+	if s.product.Shape.Layered() {
 		kind, kinds[0] = planeFull, planeFull
 	}
 	crowd := lineCrowd

@@ -46,7 +46,7 @@ func newLineGrid(p *Product, kind axisKind, r float64, n int, crowd float64) *li
 		return g
 	}
 	var layers []Layer
-	if p.Shape == LayeredSlab {
+	if p.Shape.Layered() {
 		layers = p.Layers
 	}
 	if len(layers) == 0 {

@@ -10,7 +10,7 @@ const heldW = 1e4
 
 // Mixes tells whether a product is due to be calculated as well mixed too: its food may mix by itself, and it is not stirred already.
 func Mixes(p *Product) bool {
-	return p.Shape != Stirred && p.Food != nil && p.Food.Flow == FlowsThick
+	return !p.Shape.Mixed() && p.Food != nil && p.Food.Flow == FlowsThick
 }
 
 // Mixed gives a product that may mix by itself as one that is stirred all the time, with the volume and the surface of its shape, and its
@@ -18,10 +18,10 @@ func Mixes(p *Product) bool {
 // the surface. Where faces differ, they are taken together: their films weighed by area, as ran, the run as conducting, met them, and
 // their media by film and area, which is exact for one temperature in the food. A spheroid has one surface.
 func Mixed(p Product, steps []Step, ran *History) (Product, []Step) {
-	volume, sides := bulk(p.Shape, &p.Size)
+	volume, sides := p.Shape.bulk(&p.Size)
 	var area float64 // of what any step uncovers, m²
 	for _, d := range sides {
-		if slices.ContainsFunc(steps, func(st Step) bool { return st.on(d.face).Surface != Insulated }) {
+		if slices.ContainsFunc(steps, func(st Step) bool { return !st.on(d.face).Surface.NoMedium }) {
 			area += d.areaM2
 		}
 	}
@@ -38,49 +38,6 @@ func Mixed(p Product, steps []Step, ran *History) (Product, []Step) {
 	return p, out
 }
 
-// side is a part of the surface.
-type side struct {
-	face   *Face // nil: all of it
-	areaM2 float64
-}
-
-// bulk gives the volume of a shape, m³, and the parts of its surface.
-func bulk(s *Shape, z *Size) (volumeM3 float64, sides []side) {
-	t, w, l, d := z.ThicknessM, z.WidthM, z.LengthM, z.DiameterM
-	switch s {
-	case Slab: // a square metre
-		return t, []side{{Top, 1}, {Underside, 1}}
-	case Cylinder: // a metre
-		return math.Pi / 4 * d * d, []side{{nil, math.Pi * d}}
-	case Sphere:
-		return math.Pi / 6 * d * d * d, []side{{nil, math.Pi * d * d}}
-	case ShortCylinder:
-		end := math.Pi / 4 * d * d
-		return end * l, []side{{Top, end}, {Underside, end}, {Sides, math.Pi * d * l}}
-	case Bar: // a metre
-		return t * w, []side{{Top, w}, {Underside, w}, {Sides, 2 * t}}
-	case Brick:
-		return t * w * l, []side{{Top, w * l}, {Underside, w * l}, {Sides, 2 * t * l}, {Ends, 2 * t * w}}
-	case Spheroid:
-		return math.Pi / 6 * t * d * d, []side{{nil, spheroidM2(t, d)}}
-	}
-	return z.VolumeM3, []side{{nil, z.AreaM2}}
-}
-
-// spheroidM2 is the surface of a spheroid of a thickness along its axis and a diameter across it, m² (Bronshtein & Semendyayev,
-// Handbook of Mathematics; from memory, and held by a test against a sum over rings).
-func spheroidM2(thickness, diameter float64) float64 {
-	c, a := thickness/2, diameter/2
-	switch e := math.Sqrt(math.Abs(1 - (min(a, c)/max(a, c))*(min(a, c)/max(a, c)))); {
-	case e < 1e-4: // a sphere
-		return 4 * math.Pi * a * c
-	case c > a:
-		return 2 * math.Pi * a * (a + c*math.Asin(e)/e)
-	default:
-		return 2 * math.Pi * (a*a + c*c*math.Atanh(e)/e)
-	}
-}
-
 // together makes one exposure of those of a step's faces, for a surface of areaM2.
 func together(st *Step, sides []side, areaM2 float64, films []FilmUsed) Exposure {
 	var only *Exposure // of every uncovered face
@@ -93,7 +50,7 @@ func together(st *Step, sides []side, areaM2 float64, films []FilmUsed) Exposure
 	var parts []part
 	for _, d := range sides {
 		e := st.on(d.face)
-		if e.Surface == Insulated {
+		if e.Surface.NoMedium {
 			continue
 		}
 		bare += d.areaM2

@@ -358,7 +358,7 @@ func TestHeatInIsHeatStored(t *testing.T) {
 			const topH, belowH, sideH, topC, belowC, sideC = 37., 90., 21., 160., 120., 150.
 			steps := []model.Step{{Name: "oven", Stage: model.Cook, DurationS: 3000, Exposure: film(topH, topC)}}
 			faces := map[*model.Face]model.Exposure{model.Underside: film(belowH, belowC), model.Sides: film(sideH, sideC), model.Ends: film(sideH/3, sideC)}
-			for _, face := range c.shape.Faces {
+			for _, face := range c.shape.Faces() {
 				if e, ok := faces[face]; ok {
 					steps[0].Faces = append(steps[0].Faces, model.FaceExposure{Face: face, Exposure: e})
 				}

@@ -34,7 +34,7 @@ const (
 // decay add up. ok is false where conduction sets no bound (stirred), where an outer layer that holds more heat shortens the way (layers), or
 // the product is not known in full.
 func Quickest(p *Product, at *Place, lowC, highC, filmW float64) (q Quickness, ok bool) {
-	if p.Shape == nil || p.Shape == Stirred || p.Shape == LayeredSlab {
+	if p.Shape == nil || p.Shape.Mixed() || p.Shape.Layered() {
 		return q, false
 	}
 	alpha, least, holds := 0.0, math.Inf(1), math.Inf(1) // m²/s, m²/s, J/(m³·K)
@@ -61,16 +61,18 @@ func Quickest(p *Product, at *Place, lowC, highC, filmW float64) (q Quickness, o
 	case at != nil && *at != Place{}:
 		filmW = math.Inf(1)
 		add(ballSettles, ballSlope, 3, p.deep(*at))
-	case p.Shape == Cylinder:
-		add(cylinderSettles, cylinderSlope, 2, r[0])
-	case p.Shape == ShortCylinder:
-		add(slabSettles, slabSlope, 1, r[0])
-		add(cylinderSettles, cylinderSlope, 2, r[1])
-	case p.Shape == Sphere, p.Shape == Spheroid:
+	case p.Shape.Oval(): // the ball within it
 		add(ballSettles, ballSlope, 3, p.deep(Place{}))
 	default:
-		for _, m := range r {
-			add(slabSettles, slabSlope, 1, m)
+		for i := range p.Shape.Ways {
+			switch p.Shape.Ways[i].kind {
+			case radial:
+				add(cylinderSettles, cylinderSlope, 2, r[i])
+			case spherical:
+				add(ballSettles, ballSlope, 3, r[i])
+			default:
+				add(slabSettles, slabSlope, 1, r[i])
+			}
 		}
 	}
 	q.SettleS = 1 / rate
@@ -109,7 +111,7 @@ func (f *Material) quickest(lowC, highC float64) (alpha, least, holds float64) {
 func (p *Product) deep(at Place) float64 {
 	r := reach(p)
 	got := [3]float64{math.Abs(at.UpM), math.Abs(at.AcrossM), math.Abs(at.AlongM)}
-	if p.Shape == Spheroid { // a spheroid of the same form through the place
+	if p.Shape.Oval() { // a spheroid of the same form through the place
 		return math.Max(0, math.Min(r[0], r[1])*(1-math.Hypot(got[0]/r[0], got[1]/r[1])))
 	}
 	least := math.Inf(1)

@@ -92,7 +92,7 @@ func newSkin(e *Exposure, c *filmCase, aw *float64, st *Step) *skin {
 	case e.FilmW != nil:
 		s.filmW = *e.FilmW
 	default:
-		s.air = newAirFilm(e.Surface == MovingAir, &s.film)
+		s.air = newAirFilm(e.Surface.meets == airBlown, &s.film)
 	}
 	if e.RadiatingC != nil {
 		s.radiates = usualEmissivity
@@ -137,12 +137,12 @@ func (s *skin) wets(e *Exposure, aw *float64) {
 func (e *Exposure) wet() bool { return e.Wet != nil && *e.Wet }
 
 // inAir tells whether the surroundings are air, whose film, radiation and moisture can be worked out.
-func (e *Exposure) inAir() bool { return e.Surface == StillAir || e.Surface == MovingAir }
+func (e *Exposure) inAir() bool { return e.Surface.Air() }
 
 // steamWithAir tells whether steam is said not to be all vapour, or cannot be: what is colder than the boiling point holds air, at best
 // saturated. From where even then it condenses with the film of pure steam, it is taken as pure, which is the same.
 func (e *Exposure) steamWithAir(st *Step) bool {
-	if e.Surface != Steam || e.FilmW != nil {
+	if e.Surface.meets != vapour || e.FilmW != nil {
 		return false
 	}
 	for _, rh := range e.Medium.RH {
@@ -183,7 +183,7 @@ const innerW = 50.0
 // innerFilm tells whether the film inside a vessel counts: not where the user typed the film, which stands for everything, nor where
 // the liquid itself lies open and wet.
 func (e *Exposure) innerFilm(c *filmCase) bool {
-	return c.shape == Stirred && e.FilmW == nil && !e.Surface.NoMedium && e.Surface.law == nil && !e.wet()
+	return c.shape.Mixed() && e.FilmW == nil && !e.Surface.NoMedium && e.Surface.law == nil && !e.wet()
 }
 
 // around gives the surroundings tau s after the start of the step.

@@ -53,7 +53,7 @@ func Solve(p Product, steps []Step, o Options) (*History, error) {
 
 // goal is what the error estimate is brought below, K.
 func (s *solver) goal() float64 {
-	if s.ball != nil || s.product.Shape == LayeredSlab {
+	if s.ball != nil || s.product.Shape.Layered() {
 		return goalK[3]
 	}
 	return goalK[s.used]
@@ -82,46 +82,29 @@ type solver struct {
 
 // layOut finds the axes of the product.
 func (s *solver) layOut() {
-	z := &s.product.Size
 	set := func(a int, kind axisKind, r float64, lower, upper *Face) {
 		s.kinds[a], s.radii[a], s.faces[a] = kind, r, [2]*Face{lower, upper}
 		s.used++
 	}
-	upright := func(r float64) {
-		kind := planeHalf
+	r, ways := reach(s.product), s.product.Shape.Ways
+	if s.product.Shape.Oval() {
+		s.ball = &spheroidMap{a: r[0], b: r[1]}
+		set(0, planeHalf, max(s.ball.a, s.ball.b), nil, nil)
+		set(1, planeHalf, min(s.ball.a, s.ball.b), nil, nil)
+		ways = nil
+	}
+	for a := range ways {
+		w := &ways[a]
+		kind := w.kind
 		for i := range s.steps {
-			if !sameExposure(s.steps[i].on(Top), s.steps[i].on(Underside)) {
+			if w.lower != w.upper && !sameExposure(s.steps[i].on(w.lower), s.steps[i].on(w.upper)) {
 				kind = planeFull
 			}
 		}
-		set(0, kind, r, Underside, Top)
+		set(a, kind, r[a], w.lower, w.upper)
 	}
-	switch s.product.Shape {
-	case Slab:
-		upright(z.ThicknessM / 2)
-	case Cylinder:
-		set(0, radial, z.DiameterM/2, nil, nil)
-	case Sphere:
-		set(0, spherical, z.DiameterM/2, nil, nil)
-	case ShortCylinder:
-		upright(z.LengthM / 2)
-		set(1, radial, z.DiameterM/2, Sides, Sides)
-	case Bar:
-		upright(z.ThicknessM / 2)
-		set(1, planeHalf, z.WidthM/2, Sides, Sides)
-	case Brick:
-		upright(z.ThicknessM / 2)
-		set(1, planeHalf, z.WidthM/2, Sides, Sides)
-		set(2, planeHalf, z.LengthM/2, Ends, Ends)
-	case Spheroid:
-		s.ball = &spheroidMap{a: z.ThicknessM / 2, b: z.DiameterM / 2}
-		set(0, planeHalf, max(s.ball.a, s.ball.b), nil, nil)
-		set(1, planeHalf, min(s.ball.a, s.ball.b), nil, nil)
-	case LayeredSlab:
-		upright(z.ThicknessM / 2)
-		if !symmetric(s.product.Layers) {
-			s.kinds[0] = planeFull
-		}
+	if s.product.Shape.Layered() && !symmetric(s.product.Layers) {
+		s.kinds[0] = planeFull
 	}
 	marches := s.marches()
 	s.front = marches && s.mayFreeze()
@@ -158,7 +141,7 @@ const sharpBiot = 15
 // props gives the food's properties at a temperature, with the run's own conductivity factor.
 func (s *solver) props(tC float64) Properties {
 	var q Properties
-	if s.product.Shape == LayeredSlab {
+	if s.product.Shape.Layered() {
 		q = s.product.together(tC)
 	} else {
 		q = s.product.Food.Props(tC)
@@ -212,7 +195,7 @@ func (s *solver) fewer(a, more int) int {
 		return 1
 	case s.ball != nil && a == 1:
 		return min(n-2, s.fewer(0, more))
-	case s.product.Shape == LayeredSlab || s.ball != nil: // of layers with few polynomials one less
+	case s.product.Shape.Layered() || s.ball != nil: // of layers with few polynomials one less
 		return n * 4 / 5
 	case s.kinds[a] == planeFull:
 		return n - 4
@@ -228,7 +211,7 @@ func (s *solver) grid(degrees func(a int) int, coarse bool) (axes [3]*axis, nd *
 		at := axes[a].sitesFor(s.used, coarse)
 		nd.x[a], nd.phi[a] = at.x, at.phi
 	}
-	if s.product.Shape == LayeredSlab {
+	if s.product.Shape.Layered() {
 		nd.x[0], nd.phi[0] = s.layers(axes[0].n).nodes(coarse), nil
 	}
 	return axes, nd
@@ -360,7 +343,7 @@ func (s *solver) step(h *History, span *Span, axes [3]*axis, nd *nodes, lo, hi f
 // inAir tells whether a step has air around the food.
 func inAir(shape *Shape, st *Step) bool {
 	for _, e := range exposures(shape, st) {
-		if e.Surface == StillAir || e.Surface == MovingAir {
+		if e.Surface.Air() {
 			return true
 		}
 	}
@@ -371,7 +354,7 @@ func inAir(shape *Shape, st *Step) bool {
 // Check asks the same before anything is calculated, where the media alone show it.
 func (s *solver) airQuestion(st *Step, coldest float64) {
 	for _, e := range exposures(s.product.Shape, st) {
-		if e.Surface != StillAir && e.Surface != MovingAir {
+		if !e.Surface.Air() {
 			continue
 		}
 		for _, c := range e.Medium.C {

@@ -9,7 +9,7 @@ import (
 
 // Where says in words where a place lies: by the name of the user's point that lies there, else by Lies.
 func (p *Product) Where(at Place) string {
-	if p.Shape == Stirred {
+	if p.Shape.Mixed() {
 		return "anywhere: one temperature throughout"
 	}
 	for _, pt := range p.Points {
@@ -22,28 +22,27 @@ func (p *Product) Where(at Place) string {
 
 // Lies says in words where a place lies by its distances: from the centre or the axis, above the underside, on which face.
 func (p *Product) Lies(at Place) string {
-	z, up := p.Size, at.UpM
-	switch p.Shape {
-	case Stirred:
+	up, ways, r := at.UpM, []Way(nil), reach(p)
+	if p.Shape != nil {
+		ways = p.Shape.Ways
+	}
+	switch {
+	case p.Shape.Mixed():
 		return "anywhere: one temperature throughout"
-	case Cylinder, Sphere:
-		return p.round(math.Abs(up), z.DiameterM/2)
-	case Spheroid:
+	case p.Shape.Oval():
 		return p.aboutAxis(at)
-	case LayeredSlab:
+	case p.Shape.Layered():
 		return p.inLayers(up)
+	case len(ways) > 0 && ways[0].Round():
+		return p.round(math.Abs(up), r[0], ways[0].kind)
 	}
 	if at.near(Place{}) {
 		return "centre"
 	}
-	half, across, along := z.ThicknessM/2, z.WidthM/2, math.Inf(1)
-	switch p.Shape {
-	case ShortCylinder:
-		half, across = z.LengthM/2, z.DiameterM/2
-	case Brick:
-		along = z.LengthM / 2
-	case Slab, nil:
-		across = math.Inf(1)
+	half, across, along := r[0], r[1], r[2]
+	aroundAxis := len(ways) > 1 && ways[1].Round()
+	if aroundAxis {
+		along = math.Inf(1)
 	}
 	var faces, parts []string
 	height := "half way up"
@@ -59,13 +58,13 @@ func (p *Product) Lies(at Place) string {
 	}
 	aside := ""
 	switch far := math.Abs(at.AcrossM); {
-	case across-far < sameM && p.Shape == ShortCylinder:
+	case across-far < sameM && aroundAxis:
 		faces = append(faces, "curved face")
 	case across-far < sameM:
 		faces = append(faces, "side")
-	case p.Shape == ShortCylinder && far < sameM:
+	case aroundAxis && far < sameM:
 		aside = "on the axis"
-	case p.Shape == ShortCylinder:
+	case aroundAxis:
 		aside = p.far(far) + " from the axis"
 	case far >= sameM:
 		aside = p.far(far) + " from the middle of the width"
@@ -104,9 +103,9 @@ func (p *Product) Lies(at Place) string {
 }
 
 // round is a place at r (m) in a long cylinder or a sphere of radius most.
-func (p *Product) round(r, most float64) string {
+func (p *Product) round(r, most float64, kind axisKind) string {
 	middle, skin := "the centre", "surface"
-	if p.Shape == Cylinder {
+	if kind == radial {
 		middle, skin = "the axis", "curved surface"
 	}
 	switch {

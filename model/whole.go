@@ -7,7 +7,7 @@ func (s *solver) functions(axes [3]*axis) functions {
 	switch {
 	case s.ball != nil:
 		return &ball{ballBase: ballOf(axes[0].n-1, axes[1].n-1), spheroidMap: *s.ball}
-	case s.product.Shape == LayeredSlab:
+	case s.product.Shape.Layered():
 		return s.layers(axes[0].n)
 	}
 	return nil

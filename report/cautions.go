@@ -33,11 +33,11 @@ var triggers = []trigger{
 	{"film coefficient assumed", stepsWhere(func(sp *model.Span) bool { return anyFilm(sp, func(f *model.FilmUsed) bool { return !f.Typed }) })},
 	{"water film taken low", stepsWhere(func(sp *model.Span) bool {
 		return anyExposure(sp.Step, func(e *model.Exposure) bool {
-			return (e.Surface == model.WaterBath || e.Surface == model.StirredWater) && e.FilmW == nil
+			return e.Surface.Water() && e.FilmW == nil
 		})
 	})},
 	{"evaporation left out", stepsWhere(func(sp *model.Span) bool {
-		return anyExposure(sp.Step, func(e *model.Exposure) bool { return inAir(e) && e.Surface != model.Film && uncovered(e) && !wet(e) }) // a typed coefficient stands for everything
+		return anyExposure(sp.Step, func(e *model.Exposure) bool { return e.Surface.Air() && uncovered(e) && !wet(e) }) // a typed coefficient stands for everything
 	})},
 	{"carry-over without evaporation", carryOver},
 	{"boiling throughout", func(h *Head, p *Product) ([]any, bool) {
@@ -57,7 +57,7 @@ var triggers = []trigger{
 		return nil, p.run(rules.WellMixed) != nil
 	}},
 	{"idealised shape", func(h *Head, p *Product) ([]any, bool) {
-		if p.Product.Shape == nil || p.History == nil || p.History.Recorded || p.Product.Shape == model.Stirred {
+		if p.Product.Shape == nil || p.History == nil || p.History.Recorded || p.Product.Shape.Mixed() {
 			return nil, false
 		}
 		return []any{p.Product.Shape.Name}, true
@@ -65,10 +65,10 @@ var triggers = []trigger{
 	{"layers touch perfectly", touching},
 	{"cooked food shrinks", shrinks},
 	{"start assumed uniform", func(h *Head, p *Product) ([]any, bool) {
-		return []any{h.stated(p.Product.StartC)}, p.History != nil && !p.History.Recorded && p.Product.Shape != model.Stirred
+		return []any{h.stated(p.Product.StartC)}, p.History != nil && !p.History.Recorded && !p.Product.Shape.Mixed()
 	}},
 	{"probe place unknown", func(h *Head, p *Product) ([]any, bool) {
-		return nil, p.History != nil && len(p.History.Points) <= 1 && p.Product.Shape != model.Stirred
+		return nil, p.History != nil && len(p.History.Points) <= 1 && !p.Product.Shape.Mixed()
 	}},
 	{"record sparse or with gaps", sparse},
 	{"dates set by hand", func(h *Head, p *Product) ([]any, bool) {
@@ -170,7 +170,7 @@ func anyFilm(sp *model.Span, holds func(*model.FilmUsed) bool) bool {
 }
 
 func inAir(e *model.Exposure) bool {
-	return e.Surface == model.StillAir || e.Surface == model.MovingAir || e.Surface == model.Film
+	return e.Surface.Air() || e.Surface.FilmTyped()
 }
 func uncovered(e *model.Exposure) bool { return e.Cover == nil || e.Cover == model.Open }
 func wet(e *model.Exposure) bool       { return e.Wet != nil && *e.Wet }
@@ -314,7 +314,7 @@ func touching(h *Head, p *Product) ([]any, bool) {
 func shrinks(h *Head, p *Product) ([]any, bool) {
 	moist := func(m *model.Material) bool { return !m.Waterless }
 	cooks := func(sp model.Span) bool { return sp.Step != nil && sp.Step.Stage == model.Cook }
-	return nil, p.History != nil && !p.History.Recorded && p.Product.Shape != model.Stirred && slices.ContainsFunc(p.History.Spans, cooks) &&
+	return nil, p.History != nil && !p.History.Recorded && !p.Product.Shape.Mixed() && slices.ContainsFunc(p.History.Spans, cooks) &&
 		slices.ContainsFunc(p.Product.Foods(), moist)
 }
 

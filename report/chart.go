@@ -953,19 +953,17 @@ func (h *Head) others(p *Product, d *deciding, f *chart, course func(string, *mo
 
 // SurfacePlace is the middle of the top, or the skin of a round piece; false where there is none of its own.
 func SurfacePlace(p *model.Product) (model.Place, bool) {
-	switch p.Shape {
-	case model.Stirred, nil:
+	if p.Shape == nil || p.Shape.Mixed() {
 		return model.Place{}, false
-	case model.Cylinder, model.Sphere:
-		return model.Place{UpM: p.Size.DiameterM / 2}, true
-	case model.Spheroid: // its side, which lies nearer to the middle of a long one
-		if p.Size.DiameterM < p.Size.ThicknessM {
-			return model.Place{AcrossM: p.Size.DiameterM / 2}, true
-		}
-	case model.ShortCylinder:
-		return model.Place{UpM: p.Size.LengthM / 2}, true
 	}
-	return model.Place{UpM: p.Size.ThicknessM / 2}, true
+	ways := p.Shape.Ways
+	up := *p.Size.Of(ways[0].Size) / 2
+	if p.Shape.Oval() { // its side, which lies nearer to the middle of a long one
+		if across := *p.Size.Of(ways[1].Size) / 2; across < up {
+			return model.Place{AcrossM: across}, true
+		}
+	}
+	return model.Place{UpM: up}, true
 }
 
 // levels are the temperatures of the limits, each once, over the stages that they are about.
@@ -1093,7 +1091,7 @@ func (h *Head) profile(p *Product, d *deciding, size, ends float64) (*chart, []f
 	f.yTicks = ticksTo(f.y0, f.y1, []float64{1, 2, 5, 10, 20, 25, 50, 100}, 7)
 	for _, pt := range hist.Points {
 		m, on := pt.UpM-way.places[0].UpM, pt.AcrossM == d.place.AcrossM && pt.AlongM == d.place.AlongM
-		if p.Product.Shape == model.Spheroid {
+		if p.Product.Shape.Oval() {
 			m, on = pt.UpM-pt.AcrossM, pt.UpM >= 0 && pt.AcrossM >= 0 && (pt.UpM == 0 || pt.AcrossM == 0)
 		}
 		if pt.Name == "centre" || !on {

@@ -174,7 +174,7 @@ func (p *Product) decides() *deciding {
 	if f != nil && f.Place != nil {
 		d.place, d.placeName = *f.Place, f.PlaceName
 	}
-	if p.Product.Shape == model.Stirred || d.history != p.History && kindOf(p.nameOf(d.history)) == rules.WellMixed {
+	if p.Product.Shape.Mixed() || d.history != p.History && kindOf(p.nameOf(d.history)) == rules.WellMixed {
 		d.placeName = say("anywhere")
 	}
 	if d.placeName == "" || d.placeName == "every point" {

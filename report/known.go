@@ -53,13 +53,13 @@ func (x *sheet) nearSentence(near []KnownAnswer) string {
 	return say("known near", counted(len(near), "known cases"), shape.Name) + say("known rest")
 }
 
-// solvedAs is the shape among the cases whose directions a shape shares: a bar is a brick of endless length. nil: none is needed.
+// solvedAs is the shape among the cases whose ways a shape shares: a bar is a brick of endless length. nil: none is needed.
 func solvedAs(s *model.Shape) *model.Shape {
-	switch s {
-	case model.Stirred:
+	switch {
+	case s.Mixed():
 		return nil
-	case model.Bar:
-		return model.Brick
+	case s != nil && s.Like != nil:
+		return s.Like
 	}
 	return s
 }
@@ -106,9 +106,9 @@ func surroundings(steps []model.Step) map[string]bool {
 		}
 		for _, e := range all {
 			switch {
-			case e.Surface == model.Held:
+			case e.Surface.Fixed():
 				has["held"] = true
-			case e.Surface != model.Insulated:
+			case !e.Surface.NoMedium:
 				has["film"] = true
 			}
 			if len(e.Medium.C) > 1 {

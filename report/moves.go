@@ -9,7 +9,7 @@ import (
 
 // moves says in words how the coldest and the hottest place move: taken from the field, so that --every changes nothing.
 func (x *sheet) moves() string {
-	if len(x.p.Samples.ColdestAt) == 0 || x.p.Product.Shape == model.Stirred {
+	if len(x.p.Samples.ColdestAt) == 0 || x.p.Product.Shape.Mixed() {
 		return say("moves stirred")
 	}
 	if x.p.moved == "" {
@@ -22,7 +22,7 @@ func (x *sheet) moves() string {
 		x.p.moved = capital(strings.Join(out, "; "))
 	}
 	all := say("moves sentence", x.p.moved, x.decides.placeName)
-	if x.p.Product.Shape == model.LayeredSlab { // no column tells a pack from a food
+	if x.p.Product.Shape.Layered() { // no column tells a pack from a food
 		all += say("moves layers")
 	}
 	return all

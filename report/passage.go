@@ -24,7 +24,6 @@ const besideM = 1e-8
 // passageOf is the way through a product past a place: along the thickness, the axis or the radius; of a spheroid from its side to the
 // centre and on along the axis. nil if there is none.
 func passageOf(p *model.Product, past model.Place) *passage {
-	z := &p.Size
 	w := &passage{name: "axis depth", words: "profile flat"}
 	up := func(m float64) model.Place {
 		at := past
@@ -37,30 +36,32 @@ func passageOf(p *model.Product, past model.Place) *passage {
 			w.m, w.places = append(w.m, m-origin), append(w.places, at(m))
 		}
 	}
-	half := z.ThicknessM / 2
-	switch p.Shape {
-	case model.Stirred, nil:
+	if p.Shape == nil || p.Shape.Mixed() {
 		return nil
-	case model.Cylinder, model.Sphere:
+	}
+	whole := *p.Size.Of(p.Shape.Ways[0].Size)
+	half := whole / 2
+	switch {
+	case p.Shape.Ways[0].Round():
 		w.name, w.words = "axis radius", "profile round"
-		run(0, z.DiameterM/2, 0, passageSteps, up)
-		w.ends = []model.Place{up(0), up(z.DiameterM / 2)}
+		run(0, half, 0, passageSteps, up)
+		w.ends = []model.Place{up(0), up(half)}
 		return w
-	case model.Spheroid:
+	case p.Shape.Oval():
 		w.name, w.words = "axis spheroid", "profile spheroid"
-		r := z.DiameterM / 2
+		r := *p.Size.Of(p.Shape.Ways[1].Size) / 2
 		run(-r, 0, 0, passageSteps/2, func(m float64) model.Place { return model.Place{AcrossM: -m} })
 		run(0, half, 0, passageSteps/2, func(m float64) model.Place { return model.Place{UpM: m} })
 		w.ends = []model.Place{{}, {AcrossM: r}, {UpM: half}}
 		return w
-	case model.LayeredSlab:
+	case p.Shape.Layered():
 		at := -half
 		for i := len(p.Layers) - 1; i >= 0; i-- {
 			y := &p.Layers[i]
 			if n := len(w.m); n > 0 && y.BelowM2KW > 0 {
 				w.m, w.places = append(w.m, math.NaN()), append(w.places, w.places[n-1])
 			}
-			n := max(4, int(math.Round(passageSteps*y.ThicknessM/z.ThicknessM)))
+			n := max(4, int(math.Round(passageSteps*y.ThicknessM/whole)))
 			lo, hi := at, at+y.ThicknessM
 			at = hi
 			if i < len(p.Layers)-1 {
@@ -73,9 +74,6 @@ func passageOf(p *model.Product, past model.Place) *passage {
 			}
 			run(lo, hi, -half, n, up)
 		}
-	case model.ShortCylinder:
-		half = z.LengthM / 2
-		run(-half, half, -half, passageSteps, up)
 	default:
 		run(-half, half, -half, passageSteps, up)
 	}

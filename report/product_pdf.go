@@ -841,7 +841,7 @@ func (x *sheet) predicted() {
 	d.heading(say("sketch title", x.decides.called()), 1, 48)
 	piece := x.p.productOf(x.decides.history)
 	d.sketch(piece, x.decides.place, say("sketch place", x.decides.called(), x.decides.placeName), 38)
-	if x.p.Product.Shape == model.Stirred {
+	if x.p.Product.Shape.Mixed() {
 		d.text(say("sketch sentence stirred", sizes(piece)))
 		return
 	}
@@ -1024,10 +1024,10 @@ func (x *sheet) profileSentence(times []float64) string {
 	}
 	all := capital(strings.Join(s, "; "))
 	out := say("profile sentence", all)
-	if x.p.Product.Shape == model.Spheroid {
+	if x.p.Product.Shape.Oval() {
 		out = say("profile sentence spheroid", all)
 	}
-	if x.p.Product.Shape == model.LayeredSlab {
+	if x.p.Product.Shape.Layered() {
 		out += say("profile joints")
 	}
 	if name := x.p.nameOf(hist); name != "" {
@@ -1038,6 +1038,9 @@ func (x *sheet) profileSentence(times []float64) string {
 	}
 	return out
 }
+
+// sizeName is what the size of a column is called.
+func sizeName(column string) string { return say("size " + strings.ToLower(column)) }
 
 // sizes says the sizes of a product that its shape uses.
 func sizes(p *model.Product) string {
@@ -1052,10 +1055,10 @@ func sizes(p *model.Product) string {
 		case "Surface area":
 			s = append(s, say("size area", plain(v, 4, nearest)))
 		default:
-			s = append(s, say("size "+strings.ToLower(need))+" "+length(p, v))
+			s = append(s, sizeName(need)+" "+length(p, v))
 		}
 	}
-	if p.Shape == model.LayeredSlab {
+	if p.Shape.Layered() {
 		var layers []string
 		for i, y := range p.Layers {
 			if y.BelowM2KW > 0 {

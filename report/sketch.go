@@ -11,25 +11,24 @@ import (
 func (d *doc) sketch(p *model.Product, at model.Place, name string, h float64) {
 	d.need(h)
 	s := section{d: d, p: p, at: at, name: name, x: d.left, y: d.y, h: h, x0: d.left}
-	switch p.Shape {
-	case model.Cylinder, model.Sphere:
-		s.round()
-	case model.ShortCylinder:
-		s.box(p.Size.DiameterM, p.Size.LengthM, func(q model.Place) float64 { return q.AcrossM }, "", say("size diameter"), say("size length"), true)
-	case model.Bar:
-		s.box(p.Size.WidthM, p.Size.ThicknessM, func(q model.Place) float64 { return q.AcrossM }, "", say("size width"), say("size thickness"), true)
-	case model.Brick:
-		s.x -= 6
-		s.box(p.Size.WidthM, p.Size.ThicknessM, func(q model.Place) float64 { return q.AcrossM }, say("sketch across"), say("size width"), say("size thickness"), false)
-		s.x += 64
-		s.box(p.Size.LengthM, p.Size.ThicknessM, func(q model.Place) float64 { return q.AlongM }, say("sketch along"), say("size length"), say("size thickness"), true)
-	case model.Spheroid:
+	across, along := func(q model.Place) float64 { return q.AcrossM }, func(q model.Place) float64 { return q.AlongM }
+	switch ways := p.Shape.Ways; {
+	case p.Shape.Mixed():
+		s.pot()
+	case p.Shape.Oval():
 		s.oval()
-	case model.LayeredSlab:
+	case p.Shape.Layered():
 		s.slab()
 		s.layers()
-	case model.Stirred:
-		s.pot()
+	case len(ways) == 3:
+		s.x -= 6
+		s.box(&ways[1], &ways[0], across, say("sketch across"), false)
+		s.x += 64
+		s.box(&ways[2], &ways[0], along, say("sketch along"), true)
+	case len(ways) == 2:
+		s.box(&ways[1], &ways[0], across, "", true)
+	case ways[0].Round():
+		s.round()
 	default:
 		s.slab()
 	}
@@ -143,8 +142,9 @@ func (s *section) slab() {
 	}
 	s.d.put(x+2, y-1.5, model.Top.Name, small, false)
 	s.d.put(x+2, y+h+4, model.Underside.Name, small, false)
-	t := s.p.Size.ThicknessM
-	s.measure(x-6, y, x-6, y+h, s.sizeWords(say("size thickness"), t, h))
+	column := s.p.Shape.Ways[0].Size
+	t := *s.p.Size.Of(column)
+	s.measure(x-6, y, x-6, y+h, s.sizeWords(sizeName(column), t, h))
 	to := func(pl model.Place) (float64, float64) { return x + w/2, y + h/2 - pl.UpM/t*h }
 	s.marks(to, x+w, true)
 }
@@ -154,14 +154,17 @@ func (s *section) round() {
 	r := (s.h - 14) / 2
 	cx, cy := s.x+18+r, s.y+3+r
 	s.d.pdf.circle(heavy, cx, cy, r)
-	s.measure(cx-r, cy+r+3, cx+r, cy+r+3, s.sizeWords(say("size diameter"), s.p.Size.DiameterM, 2*r+16))
-	scale := r / (s.p.Size.DiameterM / 2)
+	column := s.p.Shape.Ways[0].Size
+	whole := *s.p.Size.Of(column)
+	s.measure(cx-r, cy+r+3, cx+r, cy+r+3, s.sizeWords(sizeName(column), whole, 2*r+16))
+	scale := r / (whole / 2)
 	s.marks(func(q model.Place) (float64, float64) { return cx + q.UpM*scale, cy }, cx+r+4, true)
 }
 
 // oval is the section of a spheroid through its axis, which stands upright.
 func (s *section) oval() {
-	thick, wide := s.p.Size.ThicknessM, s.p.Size.DiameterM
+	upright, level := s.p.Shape.Ways[0].Size, s.p.Shape.Ways[1].Size
+	thick, wide := *s.p.Size.Of(upright), *s.p.Size.Of(level)
 	scale := min(60/wide, (s.h-14)/thick)
 	rx, ry := max(wide*scale/2, 4), max(thick*scale/2, 4)
 	cx, cy := s.x+18+rx, s.y+3+ry
@@ -180,8 +183,8 @@ func (s *section) oval() {
 	axis := thin
 	axis.dash = []float64{6, 2, 1, 2}
 	p.line(axis, cx, cy-ry-1.5, cx, cy+ry+1.5)
-	s.measure(cx-rx-6, cy-ry, cx-rx-6, cy+ry, s.sizeWords(say("size thickness"), thick, 2*ry))
-	s.measure(cx-rx, cy+ry+3, cx+rx, cy+ry+3, s.sizeWords(say("size diameter"), wide, 2*rx+16))
+	s.measure(cx-rx-6, cy-ry, cx-rx-6, cy+ry, s.sizeWords(sizeName(upright), thick, 2*ry))
+	s.measure(cx-rx, cy+ry+3, cx+rx, cy+ry+3, s.sizeWords(sizeName(level), wide, 2*rx+16))
 	s.marks(func(q model.Place) (float64, float64) { return cx + q.AcrossM/wide*2*rx, cy - q.UpM/thick*2*ry }, cx+rx+4, true)
 }
 
@@ -224,8 +227,9 @@ func (s *section) layers() {
 	}
 }
 
-// box is a rectangular section, or the section along the axis of a short cylinder; wide and tall in m.
-func (s *section) box(wide, tall float64, across func(model.Place) float64, caption, wideName, tallName string, words bool) {
+// box is the section of two ways that cross; side says how far to the side a place lies, m.
+func (s *section) box(level, upright *model.Way, side func(model.Place) float64, caption string, words bool) {
+	wide, tall := *s.p.Size.Of(level.Size), *s.p.Size.Of(upright.Size)
 	roomW, roomH := 60.0, s.h-16
 	if caption != "" {
 		roomW = 46
@@ -241,9 +245,9 @@ func (s *section) box(wide, tall float64, across func(model.Place) float64, capt
 	if caption != "" {
 		s.d.put(x, y-3.4, caption, small, false) // above the mark of a place at the top
 	}
-	s.measure(x-4, y, x-4, y+h, s.sizeWords(tallName, tall, h))
-	s.measure(x, y+h+3, x+w, y+h+3, s.sizeWords(wideName, wide, w))
-	s.marks(func(q model.Place) (float64, float64) { return x + w/2 + across(q)/wide*w, y + h/2 - q.UpM/tall*h }, x+w, words)
+	s.measure(x-4, y, x-4, y+h, s.sizeWords(sizeName(upright.Size), tall, h))
+	s.measure(x, y+h+3, x+w, y+h+3, s.sizeWords(sizeName(level.Size), wide, w))
+	s.marks(func(q model.Place) (float64, float64) { return x + w/2 + side(q)/wide*w, y + h/2 - q.UpM/tall*h }, x+w, words)
 }
 
 // sizeWords leaves the name away where the line is too short for it, and then the second unit, which the sentence below has.

@@ -195,26 +195,11 @@ func (p *Product) inTyped(at model.Place, h *model.History) model.Place {
 	if q == &p.Product {
 		return at
 	}
-	scale := func(v *float64, of func(*model.Size) float64) {
-		if now := of(&q.Size); now > 0 {
-			*v *= of(&p.Product.Size) / now
+	for i, v := range []*float64{&at.UpM, &at.AcrossM, &at.AlongM}[:len(p.Product.Shape.Ways)] {
+		column := p.Product.Shape.Ways[i].Size
+		if now := *q.Size.Of(column); now > 0 {
+			*v *= *p.Product.Size.Of(column) / now
 		}
-	}
-	thick, wide := func(z *model.Size) float64 { return z.ThicknessM }, func(z *model.Size) float64 { return z.WidthM }
-	long, round := func(z *model.Size) float64 { return z.LengthM }, func(z *model.Size) float64 { return z.DiameterM }
-	switch p.Product.Shape {
-	case model.Cylinder, model.Sphere:
-		scale(&at.UpM, round)
-	case model.ShortCylinder:
-		scale(&at.UpM, long)
-		scale(&at.AcrossM, round)
-	case model.Spheroid:
-		scale(&at.UpM, thick)
-		scale(&at.AcrossM, round)
-	default:
-		scale(&at.UpM, thick)
-		scale(&at.AcrossM, wide)
-		scale(&at.AlongM, long)
 	}
 	return at
 }

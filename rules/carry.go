@@ -97,7 +97,7 @@ func (v *view) counted() []interval {
 // typed there stands for convection alone.
 func openAndDry(st *model.Step) bool {
 	dry := func(e *model.Exposure) bool {
-		return (e.Surface == model.StillAir || e.Surface == model.MovingAir) && e.Wet == nil && (e.Cover == nil || e.Cover == model.Open)
+		return e.Surface.Air() && e.Wet == nil && (e.Cover == nil || e.Cover == model.Open)
 	}
 	return dry(&st.Exposure) || slices.ContainsFunc(st.Faces, func(f model.FaceExposure) bool { return dry(&f.Exposure) })
 }

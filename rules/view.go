@@ -500,7 +500,7 @@ func (v *view) scope() scope {
 
 // placeName says where a place is, in the one wording that the documents use.
 func (v *view) placeName(p model.Place) string {
-	if v.h.Product != nil && v.h.Product.Shape == model.Stirred {
+	if v.h.Product != nil && v.h.Product.Shape.Mixed() {
 		return v.h.Product.Where(p)
 	}
 	for _, pt := range v.h.Points {

@@ -214,7 +214,7 @@ func shapeTable() string {
 	var rows [][]string
 	for _, s := range model.Shapes {
 		var faces []string
-		for _, f := range s.Faces {
+		for _, f := range s.Faces() {
 			faces = append(faces, f.Name)
 		}
 		help := s.Help

@@ -41,9 +41,7 @@ func (f fitting) fitTo(p *model.Product, steps []model.Step, first int, on, c []
 	job := fit.Job{Product: *p, Steps: steps, Conductivity: f.conductivity}
 	var names []string
 	for i := first; i < len(steps) && f.film; i++ {
-		switch steps[i].Surface {
-		case model.Held, model.Insulated, model.ContactPlate:
-		default:
+		if s := steps[i].Surface; !s.Fixed() && !s.NoMedium {
 			job.Films, names = append(job.Films, []int{i}), append(names, steps[i].Name)
 		}
 	}

@@ -3,13 +3,20 @@ package main
 import (
 	"encoding/json"
 	"errors"
+	"go/ast"
+	"go/parser"
+	"go/token"
+	"go/types"
 	"io"
+	"io/fs"
 	"os"
 	"os/exec"
 	"path/filepath"
 	"slices"
 	"strings"
 	"testing"
+
+	"slowpoint/model"
 )
 
 // order says which packages each package may import: our own without "slowpoint/", others by the start of their path.
@@ -130,4 +137,79 @@ func topNames(t *testing.T) []string {
 		}
 	}
 	return names
+}
+
+// TestWhatIsAddedIsOneValue holds that a shape or a kind of surroundings is told by its value: beside the file that lists them and the cases
+// with a known answer nothing names one, but mixed.go, which makes a stirred product of another.
+func TestWhatIsAddedIsOneValue(t *testing.T) {
+	listed := map[string]bool{}
+	const list = "model/shapes.go"
+	for _, d := range parsed(t, list).Decls {
+		if g, ok := d.(*ast.GenDecl); ok && g.Tok == token.VAR {
+			for _, s := range g.Specs {
+				if v := s.(*ast.ValueSpec); ast.IsExported(v.Names[0].Name) && strings.HasPrefix(types.ExprString(v.Values[0]), "&S") {
+					listed[v.Names[0].Name] = true
+				}
+			}
+		}
+	}
+	if len(listed) != len(model.Shapes)+len(model.Surfaces) {
+		t.Fatalf("%d shapes and surroundings found in %s, there are %d", len(listed), list, len(model.Shapes)+len(model.Surfaces))
+	}
+	may := map[string]string{"model/mixed.go": "Stirred Film Insulated"}
+	files := 0
+	for _, top := range []string{"model", "rules", "report", "cmd"} {
+		err := filepath.WalkDir(filepath.Join("..", "..", top), func(path string, _ fs.DirEntry, err error) error {
+			path = strings.TrimPrefix(filepath.ToSlash(path), "../../")
+			if err != nil || !strings.HasSuffix(path, ".go") || strings.HasSuffix(path, "_test.go") || path == list || strings.HasPrefix(path, "model/verify/") {
+				return err
+			}
+			files++
+			for _, name := range namesUsed(parsed(t, path), listed) {
+				if !slices.Contains(strings.Fields(may[path]), name) {
+					t.Errorf("%s names %s: let it ask for what the value says", path, name)
+				}
+			}
+			return nil
+		})
+		if err != nil {
+			t.Fatal(err)
+		}
+	}
+	if files < 100 {
+		t.Errorf("only %d files were read", files)
+	}
+}
+
+func parsed(t *testing.T, path string) *ast.File {
+	t.Helper()
+	f, err := parser.ParseFile(token.NewFileSet(), filepath.Join("..", "..", filepath.FromSlash(path)), nil, 0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return f
+}
+
+// namesUsed lists the names of package model that a file uses: bare ones within the package, those after "model." elsewhere. The names of fields
+// are not meant.
+func namesUsed(f *ast.File, listed map[string]bool) []string {
+	var found []string
+	fields := map[ast.Node]bool{}
+	ast.Inspect(f, func(n ast.Node) bool {
+		switch n := n.(type) {
+		case *ast.SelectorExpr:
+			fields[n.Sel] = true
+			if of, ok := n.X.(*ast.Ident); ok && of.Name == "model" && listed[n.Sel.Name] {
+				found = append(found, n.Sel.Name)
+			}
+		case *ast.KeyValueExpr:
+			fields[n.Key] = true
+		case *ast.Ident:
+			if f.Name.Name == "model" && listed[n.Name] && !fields[n] {
+				found = append(found, n.Name)
+			}
+		}
+		return true
+	})
+	return found
 }

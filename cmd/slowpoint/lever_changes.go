@@ -235,7 +235,7 @@ func governing(p *model.Product) (name string, size *float64) {
 
 // governingColumn is the column of that size; "" if there is none.
 func governingColumn(p *model.Product) string {
-	if p.Shape == nil || p.Shape == model.Stirred {
+	if p.Shape == nil || p.Shape.Mixed() {
 		return ""
 	}
 	found := ""

@@ -116,8 +116,8 @@ func surroundedBy(p *workbook.Product) (lo, hi, film float64, whole bool) {
 			lo, hi = min(lo, c), max(hi, c)
 		}
 		switch {
-		case e.Surface == model.Insulated:
-		case e.Surface == model.Film && e.FilmW != nil:
+		case e.Surface != nil && e.Surface.NoMedium:
+		case e.Surface.FilmTyped() && e.FilmW != nil:
 			film = max(film, *e.FilmW)
 		default:
 			film = math.Inf(1)

@@ -99,7 +99,7 @@ func (p *product) before(height []echoes) [][]echoes {
 
 // ask tells what the model cannot calculate, as far as the product was understood.
 func (r *reader) ask(p *product, pr *process) {
-	if p.Shape == nil || len(p.Steps) == 0 || p.Shape != model.LayeredSlab && p.Food == nil || p.Shape == model.LayeredSlab && len(p.Layers) == 0 {
+	if p.Shape == nil || len(p.Steps) == 0 || !p.Shape.Layered() && p.Food == nil || p.Shape.Layered() && len(p.Layers) == 0 {
 		return
 	}
 	for i := range p.Layers {

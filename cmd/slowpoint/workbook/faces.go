@@ -1,6 +1,7 @@
 package workbook
 
 import (
+	"slices"
 	"strconv"
 
 	"slowpoint/model"
@@ -152,15 +153,14 @@ func (p *product) faceFits(f *face) {
 	if p.Shape == nil || f.Face == nil {
 		return
 	}
-	for _, g := range p.Shape.Faces {
-		if g == f.Face {
-			return
-		}
+	faces := p.Shape.Faces()
+	if slices.Contains(faces, f.Face) {
+		return
 	}
-	if len(p.Shape.Faces) == 0 {
+	if len(faces) == 0 {
 		f.line.Fault("Face", f.Face.Name, faceNone, p.Shape.Name)
 	} else {
-		f.line.Fault("Face", f.Face.Name, faceWrong, p.Shape.Name, and(names(p.Shape.Faces, func(f *model.Face) string { return f.Name })))
+		f.line.Fault("Face", f.Face.Name, faceWrong, p.Shape.Name, and(names(faces, func(f *model.Face) string { return f.Name })))
 	}
 	p.because.Add(f.line.because[len(f.line.because)-1])
 	f.line.because = f.line.because[:len(f.line.because)-1] // other products of the process have other shapes

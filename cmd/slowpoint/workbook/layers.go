@@ -27,7 +27,7 @@ type layer struct {
 // readLayers reads the sheet Layers and hangs its rows on their products.
 func (r *reader) readLayers() {
 	for _, p := range r.products {
-		if p.Shape == model.LayeredSlab {
+		if p.Shape.Layered() {
 			p.suffer(r.unread["Layers"])
 		}
 	}
@@ -43,7 +43,7 @@ func (r *reader) readLayers() {
 		}
 	}
 	for _, p := range r.products {
-		if p.Shape == model.LayeredSlab && len(r.unread["Layers"]) == 0 {
+		if p.Shape.Layered() && len(r.unread["Layers"]) == 0 {
 			p.stack()
 		}
 	}
@@ -87,7 +87,7 @@ func (r *reader) hangLayer(l *Line, y *layer) bool {
 			l.Fault("Product", name, productUnknown, r.offer(name, r.productNames))
 		}
 		return false
-	case p.Shape != nil && p.Shape != model.LayeredSlab:
+	case p.Shape != nil && !p.Shape.Layered():
 		l.Fault("Product", name, layersOfOther, p.Shape.Name)
 	}
 	for _, o := range p.layers {
@@ -104,10 +104,10 @@ func (r *reader) hangLayer(l *Line, y *layer) bool {
 // Not those that have a layer of its number, and of the others only the one with nearly its name, if there is one.
 func (r *reader) missing(y *layer) {
 	lacks := func(p *product) bool {
-		return p.Shape == model.LayeredSlab && (y.n == 0 || !slices.ContainsFunc(p.layers, func(o *layer) bool { return o.n == y.n }))
+		return p.Shape.Layered() && (y.n == 0 || !slices.ContainsFunc(p.layers, func(o *layer) bool { return o.n == y.n }))
 	}
 	near := r.byName[Key(r.near(y.line.Words("Product"), r.productNames))]
-	if near != nil && (near.Shape != model.LayeredSlab || lacks(near)) {
+	if near != nil && (!near.Shape.Layered() || lacks(near)) {
 		if lacks(near) {
 			near.suffer(y.line.because)
 		}

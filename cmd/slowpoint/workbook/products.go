@@ -96,7 +96,7 @@ func inches(typed string) bool {
 
 // productFood finds the food of a product.
 func (r *reader) productFood(p *product, l *Line) {
-	layered := p.Shape == model.LayeredSlab
+	layered := p.Shape.Layered()
 	name := l.Words("Food")
 	switch {
 	case layered && name != "":
@@ -147,7 +147,7 @@ func (r *reader) readPoints() {
 			l.Fault("Point", name, pointCentre)
 		case p.points[Key(name)] > 0:
 			l.Fault("Point", name, pointTwice, strconv.Itoa(p.points[Key(name)]))
-		case p.Shape == model.Stirred && !builtIn:
+		case p.Shape.Mixed() && !builtIn:
 			l.Fault("Point", name, pointStirred)
 		}
 		if p.points == nil {

@@ -63,7 +63,7 @@ func sizeVaries(name, less, more string) *Varies {
 	column := strings.ToUpper(name[:1]) + name[1:]
 	return &Varies{Name: name, quantity: &unit.Length, example: "2 mm", percent: true, less: less, more: more, positive: true,
 		has: func(p *model.Product, _ *model.Step) bool {
-			return p.Shape != nil && (slices.Contains(p.Shape.Needs, column) || p.Shape == model.LayeredSlab && name == "thickness")
+			return p.Shape != nil && (slices.Contains(p.Shape.Needs, column) || p.Shape.Layered() && name == "thickness")
 		},
 		value: func(p *model.Product, _ *model.Step) float64 { return *p.Size.Of(column) },
 		one:   func(p *model.Product, _ *model.Step) (float64, bool) { return *p.Size.Of(column), true },
@@ -157,7 +157,7 @@ func oneMedium(_ *model.Product, s *model.Step) (float64, bool) {
 
 // worksOut tells whether the program works the film of an exposure out, as one number or by the surface temperature.
 func worksOut(e *model.Exposure) bool {
-	return e.FilmW == nil && e.Surface != nil && !e.Surface.NoMedium && e.Surface != model.Held && e.Surface != model.ContactPlate && e.Surface != model.Film
+	return e.FilmW == nil && e.Surface != nil && !e.Surface.NoMedium && !e.Surface.Fixed() && !e.Surface.FilmTyped()
 }
 
 // Spreads are the quantities that may vary, in the order of the sheet's list.

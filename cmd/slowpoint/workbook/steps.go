@@ -185,8 +185,8 @@ var quicker = []string{"water", "bath", "ice", "icy", "slurry", "spray", "plate"
 
 // quick warns of a film coefficient that air does not reach, where food cools or stands and nothing speaks of water, plates or sprays.
 func (l *Line) quick(x *model.Exposure, s *step) {
-	inAir := x.Surface == model.StillAir || x.Surface == model.MovingAir
-	if x.FilmW == nil || *x.FilmW <= mostOfAir || usualFilm.outside(*x.FilmW) || s.Stage == nil || x.Surface != model.Film && !inAir {
+	inAir := x.Surface.Air()
+	if x.FilmW == nil || *x.FilmW <= mostOfAir || usualFilm.outside(*x.FilmW) || s.Stage == nil || !x.Surface.FilmTyped() && !inAir {
 		return
 	}
 	switch s.Stage {
