@@ -38,6 +38,7 @@ func airOf(tC, pa float64) air {
 // correlation is a published formula for the Nusselt number, and where it holds.
 type correlation struct {
 	name    string
+	formula string                      // its authors and year, where it may be taken for another fluid
 	nusselt func(x, pr float64) float64 // x: the Rayleigh number of free convection, the Reynolds number of forced
 	least   func(pr float64) float64    // smallest x; nil: its low end is that of a surface in air at rest
 	most    float64                     // largest x: beyond, the value there is kept
@@ -50,8 +51,8 @@ type correlation struct {
 
 // The correlations. Their formulas stand below, with their sources.
 var (
-	freeCylinder = correlation{name: "Churchill & Chu 1975 (horizontal cylinder in still air, Rayleigh number up to 1e12)", nusselt: churchillChu, perK: churchillChuPerK, by: churchillChuBy, most: 1e12}
-	freeSphere   = correlation{name: "Churchill 1983 (sphere in still air, Rayleigh number up to 1e13)", nusselt: sphereFree, perK: sphereFreePerK, by: sphereFreeBy, most: 1e13}
+	freeCylinder = correlation{formula: "Churchill & Chu 1975", name: "Churchill & Chu 1975 (horizontal cylinder in still air, Rayleigh number up to 1e12)", nusselt: churchillChu, perK: churchillChuPerK, by: churchillChuBy, most: 1e12}
+	freeSphere   = correlation{formula: "Churchill 1983", name: "Churchill 1983 (sphere in still air, Rayleigh number up to 1e13)", nusselt: sphereFree, perK: sphereFreePerK, by: sphereFreeBy, most: 1e13}
 	freeLayered  = correlation{name: "McAdams 1954 (horizontal plate, cold face up or warm face down in still air, Rayleigh number up to 1e10)", nusselt: plateLayered, most: 1e10}
 
 	forcedCylinder = correlation{name: "Churchill & Bernstein 1977 (cylinder in cross flow, Reynolds × Prandtl number from 0.2, Reynolds number up to 1e7)", nusselt: churchillBernstein,

@@ -48,8 +48,8 @@ const airNodesFromC, airNodeK, airNodes = -48, 4, 100
 // newAirFilm takes the correlations that fit a case. Whether the air is too slow for the forced one is decided by the air alone, so that
 // the film does not jump while the surface warms.
 func newAirFilm(moving bool, c *filmCase) *airFilm {
-	free, forced := c.shape.inAir(&c.size)
-	f := &airFilm{lengthM: c.shape.acrossAirM(&c.size), totalPa: pressurePa(c.altitudeM), free: free, nodes: make([]airNode, airNodes)}
+	free, forced := c.shape.inFluid(&c.size)
+	f := &airFilm{lengthM: c.shape.acrossFlowM(&c.size), totalPa: pressurePa(c.altitudeM), free: free, nodes: make([]airNode, airNodes)}
 	if c.shape.flat() {
 		f.lies = c.face
 	}

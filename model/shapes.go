@@ -98,10 +98,10 @@ var (
 	MovingAir = &Surface{Name: "moving air", meets: airBlown, Needs: []string{"Air speed"}, May: []string{"Film coefficient", "Relative humidity", "Radiating temperature", "Emissivity", "Surface", "Wrap resistance"}, film: movingAir,
 		Help: "air blown over the food; as still air, and never less than it"}
 	WaterBath = &Surface{Name: "water bath", meets: openWater, May: []string{"Film coefficient", "Wrap resistance"},
-		film: stated(waterBathW, "stated low: a vacuum-packed roast cooled more slowly in water than in air of 2 m/s (James & James 2002, Meat Refrigeration, table 16.7), at 21 to 31 W/m²K by how its shape and start are read; textbooks give 50 to 100 for liquids left still"),
+		film: inWater("stated low: a vacuum-packed roast cooled more slowly in water than in air of 2 m/s (James & James 2002, Meat Refrigeration, table 16.7), at 21 to 31 W/m²K by how its shape and start are read; textbooks give 50 to 100 for liquids left still"),
 		Help: "water left still; a low film is taken unless you type one"}
 	StirredWater = &Surface{Name: "stirred water", meets: openWater, May: []string{"Film coefficient", "Wrap resistance"},
-		film: stated(waterBathW, "stated low, as in a water bath: measured joints in water cooled as slowly as with 21 to 31 W/m²K (James & James 2002, Meat Refrigeration, table 16.7), and whether that water was stirred is not published; 95 to 155 for a pouch in stirred water (Baldwin 2012, Int. J. Gastronomy and Food Science 1:15-30; from memory) has to be typed"),
+		film: inWater("stated low, as in a water bath: measured joints in water cooled as slowly as with 21 to 31 W/m²K (James & James 2002, Meat Refrigeration, table 16.7), and whether that water was stirred is not published; 95 to 155 for a pouch in stirred water (Baldwin 2012, Int. J. Gastronomy and Food Science 1:15-30; from memory) has to be typed"),
 		Help: "water kept moving; the low film of a water bath is taken unless you type one (95 to 155 W/m²K for a pouch, Baldwin 2012, from memory)"}
 	BoilingWater = &Surface{Name: "boiling water", meets: waterAtBoil, May: []string{"Film coefficient", "Wrap resistance"},
 		film: stated(1000, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 (Çengel, Heat Transfer, typical values): food conducts so badly that more makes no difference"),

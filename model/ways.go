@@ -133,10 +133,10 @@ func spheroidM2(thickness, diameter float64) float64 {
 // openWidthM stands for the width and length that a slab does not give: a large tray, so that films come out low.
 const openWidthM = 0.5
 
-// acrossAirM is the size across the air, m. A body of three sizes lies across it with its middle one, as the cylinder formulas take it: the
+// acrossFlowM is the size across the flow of air or water, m. A body of three sizes lies across it with its middle one, as the cylinder formulas take it: the
 // diameter of a long joint, the middle edge of a block, the diameter of a flat tin. Round ones have their diameter twice or three times, an
 // endless direction is the largest, and what is mixed lies as the cube of its volume.
-func (s *Shape) acrossAirM(z *Size) float64 {
+func (s *Shape) acrossFlowM(z *Size) float64 {
 	if s.build == mixed {
 		return math.Cbrt(z.VolumeM3)
 	}
@@ -158,8 +158,8 @@ func (s *Shape) acrossAirM(z *Size) float64 {
 // spheroids (AIAA paper 88-0743, 1988; from memory) gives as much within 8 %. Rounder ones take the sphere's film, which is lower.
 const longSpheroid = 1.5
 
-// inAir gives the correlations of air that stands and of air that streams over a shape.
-func (s *Shape) inAir(z *Size) (free, forced *correlation) {
+// inFluid gives the correlations of air or water that stands and of air that streams over a shape.
+func (s *Shape) inFluid(z *Size) (free, forced *correlation) {
 	switch {
 	case s.flat():
 		return &freeCylinder, &forcedPlate

@@ -46,9 +46,9 @@ func TestSizesFollowFromTheWays(t *testing.T) {
 	z := Size{ThicknessM: 0.03, WidthM: 0.05, LengthM: 0.11, DiameterM: 0.07, VolumeM3: 0.004, AreaM2: 0.16}
 	circle, inf := math.Pi*0.07*0.07/4, math.Inf(1)
 	for _, c := range []struct {
-		shape                       *Shape
-		volumeM3, areaM2, acrossAir float64
-		reach                       [3]float64
+		shape                        *Shape
+		volumeM3, areaM2, acrossFlow float64
+		reach                        [3]float64
 	}{
 		{Slab, 0.03, 2, 0.5, [3]float64{0.015, inf, inf}},
 		{Cylinder, circle, math.Pi * 0.07, 0.07, [3]float64{0.035, 0, inf}},
@@ -69,8 +69,8 @@ func TestSizesFollowFromTheWays(t *testing.T) {
 			if math.Abs(volume/c.volumeM3-1) > 1e-12 || math.Abs(area/c.areaM2-1) > 1e-12 {
 				t.Errorf("%.10g m³ in %.10g m², want %.10g and %.10g", volume, area, c.volumeM3, c.areaM2)
 			}
-			if got := c.shape.acrossAirM(&z); got != c.acrossAir {
-				t.Errorf("%g m across the air, want %g", got, c.acrossAir)
+			if got := c.shape.acrossFlowM(&z); got != c.acrossFlow {
+				t.Errorf("%g m across the flow, want %g", got, c.acrossFlow)
 			}
 			if got := reach(&Product{Shape: c.shape, Size: z}); got != c.reach {
 				t.Errorf("reaches %v m, want %v", got, c.reach)
