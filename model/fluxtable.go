@@ -6,7 +6,8 @@ import "math"
 // asked for, and cut into narrower ones where a cubic does not follow the flux: at the kinks between two laws.
 type fluxTable struct {
 	fromC, width, perK float64 // pieces of width K from fromC on; perK = 1/width
-	pieces             []fluxPiece
+	count              int
+	pieces             []fluxPiece // count of them; nil until the first is asked for: many a table never is
 	depth              int
 	of                 func(surfaceC, d float64) (w, slope float64) // d: half width of the difference for the slope, K; 0: no slope is needed
 }
@@ -30,14 +31,17 @@ const (
 )
 
 func newFluxTable(fromC, width float64, pieces, depth int, of func(surfaceC, d float64) (w, slope float64)) *fluxTable {
-	return &fluxTable{fromC: fromC, width: width, perK: 1 / width, depth: depth, of: of, pieces: make([]fluxPiece, pieces)}
+	return &fluxTable{fromC: fromC, width: width, perK: 1 / width, depth: depth, of: of, count: pieces}
 }
 
 // at gives flux and slope.
 func (t *fluxTable) at(surfaceC float64) (w, slope float64) {
 	x := (surfaceC - t.fromC) * t.perK
 	if !(x >= 0 && x < float64(len(t.pieces))) {
-		return t.of(surfaceC, slopeK)
+		if !(x >= 0 && x < float64(t.count)) {
+			return t.of(surfaceC, slopeK)
+		}
+		t.pieces = make([]fluxPiece, t.count)
 	}
 	p := &t.pieces[int(x)]
 	for !p.ready {
@@ -85,6 +89,7 @@ func (t *fluxTable) cut(i int) {
 		if got, _ := p.at(x); math.Abs(got-w) > tableClose*(math.Abs(w)+math.Abs(sa)) {
 			p.ready = false
 			p.finer = newFluxTable(a, l/tableFiner, tableFiner, t.depth-1, t.of)
+			p.finer.pieces = make([]fluxPiece, tableFiner)
 			return
 		}
 	}

@@ -43,10 +43,17 @@ const (
 	uFirst = 0.02
 )
 
-// readByU tables the law by u.
-func (l *law) readByU() *uLaw {
+// byU is the law by u, tabled when it is first asked for.
+func (l *law) byU() *uLaw {
+	if l.otherWay == nil {
+		l.readByU()
+	}
+	return l.otherWay
+}
+
+func (l *law) readByU() {
 	end := func(p *piece) float64 { return l.kirchhoff(float64(len(p.rows)) / p.per) }
-	return &uLaw{l.pieceByU(end(&l.warm)), l.pieceByU(end(&l.cold))}
+	l.otherWay = &uLaw{l.pieceByU(end(&l.warm)), l.pieceByU(end(&l.cold))}
 }
 
 // pieceByU tables the law from u = 0 to end.

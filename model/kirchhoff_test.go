@@ -18,8 +18,8 @@ func TestLawIsTheSameBothWays(t *testing.T) {
 	for _, c := range []float64{-79, -40, -18, -5, -2, -1.3, -1.11, -1.1001, -1.1, -1.0999, -1, 0, 5, 40, 99, 150, 390, 420} {
 		h := l.heat(c)
 		u := l.kirchhoff(h)
-		gotC, slope := l.byU.temperature(u)
-		gotH := l.byU.heat(u)
+		gotC, slope := l.byU().temperature(u)
+		gotH := l.byU().heat(u)
 		_, _, dt, du := l.at(h)
 		if math.Abs(gotC-c) > 1e-5 {
 			t.Errorf("%g °C: %.7g °C by u", c, gotC)
@@ -36,7 +36,7 @@ func TestLawIsTheSameBothWays(t *testing.T) {
 // A mean over a spread of u is the integral of the heat content over it, on one row and over several, across the freezing point and beside it,
 // and its slopes are those of the mean.
 func TestMeanHeatContent(t *testing.T) {
-	b := newLaw(freezingFood(), 1).byU
+	b := newLaw(freezingFood(), 1).byU()
 	cases := [][2]float64{{0, 0.5}, {0, 1e-3}, {-0.2, 0.5}, {0.3, 0.5}, {-3, 0.1}, {-3, 0.8}, {-3, 1.5}, {-3, 2.9}, {-0.1, 0.02}, {-40, 3}, {12, 0.4}, {12, 11}, {-0.004, 0.003}}
 	for u := -3.4; u < -2.6; u += 0.07 {
 		for d := 0.1; d < 0.5; d += 0.06 {

@@ -14,7 +14,7 @@ type law struct {
 	zeroC      float64 // temperature at which h and u are 0, °C
 	warm, cold piece   // h ≥ 0 and h < 0
 	lowC       float64 // coldest temperature that the tables know, °C
-	byU        *uLaw   // the same the other way round
+	otherWay   *uLaw   // see byU
 }
 
 // piece is a table over evenly spaced heat contents from 0 on, downwards for the cold one; each row is a cubic through its two ends with
@@ -62,7 +62,6 @@ func newLaw(m *Material, factor float64) *law {
 	default:
 		l.cold, l.warm = tabulate(l.zeroC, coldestC, 64, props, nil), tabulate(l.zeroC, hottestC, 192, props, nil)
 	}
-	l.byU = l.readByU()
 	return l
 }
 

@@ -250,7 +250,15 @@ func (s *solver) marchStep(f *marched, span *Span, e effort) *chainStep {
 		}
 		own := *e
 		own.Medium = s.raised(st, e, span)
-		k := s.skinOf(&own, face, st)
+		k := s.worn[e] // a rougher or finer march has the same surroundings
+		if k == nil {
+			if k = s.skinOf(&own, face, st); k.table != nil {
+				if s.worn == nil {
+					s.worn = map[*Exposure]*skin{}
+				}
+				s.worn[e] = k
+			}
+		}
 		if e == &st.Exposure {
 			face = nil
 		}

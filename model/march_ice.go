@@ -173,7 +173,7 @@ func (v *iceVolumes) within(h, guess, at, near float64) (u, slope float64) {
 	lo, hi := at-near, at+near
 	u = max(lo, min(hi, guess))
 	for range 50 {
-		mean, byU, _ := v.law.byU.mean(u, near)
+		mean, byU, _ := v.law.byU().mean(u, near)
 		off := mean - h
 		if off > 0 {
 			hi = u

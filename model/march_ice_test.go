@@ -22,7 +22,7 @@ func TestVolumesWithAFrontAreReadAsMeans(t *testing.T) {
 			const parts = 20000
 			mean := 0.0
 			for k := range parts {
-				h := l.byU.heat(u + near*(2*(float64(k)+0.5)/parts-1))
+				h := l.byU().heat(u + near*(2*(float64(k)+0.5)/parts-1))
 				mean += h / parts
 			}
 			v.near[2], v.shift[2] = near*near, 0

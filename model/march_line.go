@@ -225,7 +225,7 @@ func (m *lineMarch) look(u []float64) {
 	mean, meanU, meanF, meanA := m.mean[:n], m.meanU[:n], m.meanF[:n], m.meanA[:n]
 	wFore, wAft, spread := m.fore[:n], m.aft[:n], m.spread[:n]
 	for _, p := range m.parts {
-		l := m.laws[m.food[p[0]]].byU
+		l := m.laws[m.food[p[0]]].byU()
 		fore, aft := 0.0, 0.0
 		for i := p[0]; i <= p[1]; i++ {
 			x := u[i]
@@ -564,7 +564,7 @@ func (m *lineMarch) between(d float64) float64 {
 	worst := 0.0
 	c, slope, c2, slope2 := m.c[:len(m.u1)], m.slope[:len(m.u1)], m.c2[:len(m.u1)], m.slope2[:len(m.u1)]
 	for _, p := range m.parts {
-		l := m.laws[m.food[p[0]]].byU
+		l := m.laws[m.food[p[0]]].byU()
 		for i := p[0]; i <= p[1]; i++ {
 			t, _ := l.temperature(m.u1[i])
 			if off := math.Abs(t - (at.c0*c[i] + at.s0*slope[i] + at.c1*c2[i] + at.s1*slope2[i])); !(off <= worst) {
@@ -617,7 +617,7 @@ func (m *lineMarch) keep(k *track, t float64) {
 // read fills c with the temperatures at u, and slope with their slopes by u, K·m/W.
 func (m *lineMarch) read(u, c, slope []float64) {
 	for _, p := range m.parts {
-		l := m.laws[m.food[p[0]]].byU
+		l := m.laws[m.food[p[0]]].byU()
 		for i := p[0]; i <= p[1]; i++ {
 			c[i], slope[i] = l.temperature(u[i])
 		}
@@ -676,7 +676,7 @@ func (m *lineMarch) firstS() float64 {
 func (m *lineMarch) span() (low, high float64) {
 	low, high = math.Inf(1), math.Inf(-1)
 	for i, u := range m.u {
-		c, _ := m.laws[m.food[i]].byU.temperature(u)
+		c, _ := m.laws[m.food[i]].byU().temperature(u)
 		low, high = min(low, c), max(high, c)
 	}
 	return low, high

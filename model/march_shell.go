@@ -210,7 +210,7 @@ func (m *shellMarch) conducts(u []float64, anew bool) {
 // look reads the mean heat contents of the volumes at u with their slopes.
 func (m *shellMarch) look(u []float64) {
 	for i, x := range u {
-		m.mean[i], m.meanU[i], _ = m.law.byU.mean(x+m.off[i], m.spread[i])
+		m.mean[i], m.meanU[i], _ = m.law.byU().mean(x+m.off[i], m.spread[i])
 	}
 }
 
@@ -221,7 +221,7 @@ func (m *shellMarch) surface(u []float64, tau float64, slopes []float64) {
 		return
 	}
 	for j, i := range m.spots[0][1] {
-		t, dt := m.law.byU.temperature(u[i])
+		t, dt := m.law.byU().temperature(u[i])
 		q, d := s.flux(t, tau)
 		m.flow[i] += q * m.faceM2[j]
 		if slopes != nil {
@@ -436,11 +436,11 @@ func (m *shellMarch) try(tau, d float64) float64 {
 	at := cubicAt(0, trGamma, d)
 	worst := 0.0
 	for i, e := range m.delta {
-		_, thin := m.law.byU.temperature(m.u2[i])
+		_, thin := m.law.byU().temperature(m.u2[i])
 		worst = max(worst, math.Abs(e)*max(thin, m.meanU[i]*heatCounts))
 		if !m.fresh {
-			t, _ := m.law.byU.temperature(m.u1[i])
-			k, _ := m.law.byU.temperature(at.c0*m.u0[i] + at.s0*m.uRate[i] + at.c1*m.u2[i] + at.s1*m.uRate2[i])
+			t, _ := m.law.byU().temperature(m.u1[i])
+			k, _ := m.law.byU().temperature(at.c0*m.u0[i] + at.s0*m.uRate[i] + at.c1*m.u2[i] + at.s1*m.uRate2[i])
 			worst = max(worst, math.Abs(t-k)*betweenCounts)
 		}
 	}

@@ -186,7 +186,7 @@ func (m *spaceMarch) hold(h, rate []float64, tau float64) {
 // temperature gives that of node i with heat content h at the last rates, °C.
 func (m *spaceMarch) temperature(h float64, i int) float64 {
 	if m.ice != nil {
-		t, _ := m.law.byU.temperature(m.u[i])
+		t, _ := m.law.byU().temperature(m.u[i])
 		return t
 	}
 	return m.law.temperature(h)
@@ -262,7 +262,7 @@ func (m *spaceMarch) thinAt(h float64, i int) float64 {
 		return thin
 	}
 	_, du := m.ice.invert(h, m.u[i], i)
-	_, dt := m.law.byU.temperature(m.u[i])
+	_, dt := m.law.byU().temperature(m.u[i])
 	return du * dt
 }
 
@@ -300,8 +300,8 @@ func (m *spaceMarch) span() (low, high float64) {
 		for _, u := range m.u {
 			low, high = min(low, u), max(high, u)
 		}
-		low, _ = m.law.byU.temperature(low)
-		high, _ = m.law.byU.temperature(high)
+		low, _ = m.law.byU().temperature(low)
+		high, _ = m.law.byU().temperature(high)
 		return low, high
 	}
 	for _, h := range m.h {

@@ -56,13 +56,13 @@ func freezingFood() *Material {
 func wetRadiating(filmW, mediumC, radiantC, rh, km float64) Exposure {
 	const emissivity, aw, latent, sigma = 0.9, 0.98, 2.4e6, 5.670374419e-8
 	sat := func(c float64) float64 { return 610.94 * math.Exp(17.625*c/(c+243.04)) }
-	slope := func(c float64) float64 { return sat(c) * 17.625 * 243.04 / (c + 243.04) / (c + 243.04) }
-	kelvin4 := func(c float64) float64 { return math.Pow(c+273.15, 4) }
-	vapour := rh * sat(mediumC)
+	vapour, walls := rh*sat(mediumC), radiantC+273.15
+	walls *= walls
 	e := filmTo(filmW, mediumC)
 	e.Surface = &Surface{Name: "test surface", law: func(c, _ float64) (float64, float64) {
-		return filmW*(mediumC-c) + emissivity*sigma*(kelvin4(radiantC)-kelvin4(c)) - km*latent*(aw*sat(c)-vapour),
-			-filmW - 4*emissivity*sigma*math.Pow(c+273.15, 3) - km*latent*aw*slope(c)
+		k, p, x := c+273.15, sat(c), c+243.04
+		return filmW*(mediumC-c) + emissivity*sigma*(walls*walls-k*k*k*k) - km*latent*(aw*p-vapour),
+			-filmW - 4*emissivity*sigma*k*k*k - km*latent*aw*p*17.625*243.04/(x*x)
 	}}
 	return e
 }

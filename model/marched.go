@@ -47,7 +47,7 @@ func (f *marched) course(x coord, times, out []float64) {
 	if f.track.ice != nil {
 		for i, t := range times {
 			f.track.raw(f.track.find(t), f.now)
-			out[i], _ = f.track.ice.byU.temperature(f.mesh.at(x, f.now))
+			out[i], _ = f.track.ice.byU().temperature(f.mesh.at(x, f.now))
 		}
 		return
 	}
@@ -294,8 +294,8 @@ func (f *marched) differsByIce(h *History, rough *marched) float64 {
 				if cold[j] && warm[j] {
 					continue
 				}
-				a, _ := f.track.ice.byU.temperature(u)
-				b, _ := f.track.ice.byU.temperature(fine[j])
+				a, _ := f.track.ice.byU().temperature(u)
+				b, _ := f.track.ice.byU().temperature(fine[j])
 				worst = max(worst, math.Abs(a-b))
 			}
 			if t == sp.EndS {

@@ -73,11 +73,12 @@ type solver struct {
 	sharp   [3]bool      // a film on the axis so strong that the surface all but jumps
 	chain   []*chainStep
 	main    field
-	tmp     *scratch    // for what does not outlive the solution
-	refused cell.Errors // found while solving
-	laws    []*law      // of the foods, by layer; made when a march needs them
-	front   bool        // marched, and any place may freeze or melt
-	corners int         // marched: how often the media change their slope in the chain
+	tmp     *scratch            // for what does not outlive the solution
+	refused cell.Errors         // found while solving
+	laws    []*law              // of the foods, by layer; made when a march needs them
+	worn    map[*Exposure]*skin // of surroundings that stay as they are, for every march of the chain
+	front   bool                // marched, and any place may freeze or melt
+	corners int                 // marched: how often the media change their slope in the chain
 }
 
 // layOut finds the axes of the product.

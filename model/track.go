@@ -100,7 +100,7 @@ func (k *track) all(b between, out []float64) {
 	k.raw(b, out)
 	if k.ice != nil {
 		for j, u := range out[:k.n] {
-			out[j], _ = k.ice.byU.temperature(u)
+			out[j], _ = k.ice.byU().temperature(u)
 		}
 	}
 }
@@ -109,7 +109,7 @@ func (k *track) all(b between, out []float64) {
 func (k *track) kept(i, j int) float64 {
 	c := k.data[2*k.n*i+j]
 	if k.ice != nil {
-		t, _ := k.ice.byU.temperature(c)
+		t, _ := k.ice.byU().temperature(c)
 		return t
 	}
 	return c
@@ -127,8 +127,8 @@ func (k *track) reach(from, to float64) (low, high float64) {
 		low, high = min(low, least), max(high, most)
 	}
 	if k.ice != nil && low <= high {
-		low, _ = k.ice.byU.temperature(low)
-		high, _ = k.ice.byU.temperature(high)
+		low, _ = k.ice.byU().temperature(low)
+		high, _ = k.ice.byU().temperature(high)
 	}
 	return low, high
 }

@@ -1040,7 +1040,7 @@ func (x *sheet) profileSentence(times []float64) string {
 }
 
 // sizeName is what the size of a column is called.
-func sizeName(column string) string { return say("size " + strings.ToLower(column)) }
+func sizeName(column string) string { return strings.ToLower(column) }
 
 // sizes says the sizes of a product that its shape uses.
 func sizes(p *model.Product) string {
@@ -1067,7 +1067,7 @@ func sizes(p *model.Product) string {
 				layers = append(layers, say("size layer", i+1, y.Food.Name, length(p, y.ThicknessM)))
 			}
 		}
-		s = append(s, say("size thickness")+" "+length(p, p.Size.ThicknessM), say("size layers", len(layers), strings.Join(layers, ", ")))
+		s = append(s, sizeName("Thickness")+" "+length(p, p.Size.ThicknessM), say("size layers", len(layers), strings.Join(layers, ", ")))
 	}
 	return strings.Join(s, ", ")
 }
