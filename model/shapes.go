@@ -86,6 +86,9 @@ func (s *Surface) Water() bool { return s != nil && s.meets == openWater }
 // Fixed tells whether the surface is at the temperature, apart from what lies between.
 func (s *Surface) Fixed() bool { return s != nil && s.meets == fixed }
 
+// Insulates tells whether no heat passes.
+func (s *Surface) Insulates() bool { return s != nil && s.NoMedium }
+
 // FilmTyped tells whether a typed coefficient stands for everything that happens at the surface.
 func (s *Surface) FilmTyped() bool { return s != nil && s.meets == filmTyped }
 

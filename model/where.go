@@ -22,25 +22,26 @@ func (p *Product) Where(at Place) string {
 
 // Lies says in words where a place lies by its distances: from the centre or the axis, above the underside, on which face.
 func (p *Product) Lies(at Place) string {
-	up, ways, r := at.UpM, []Way(nil), reach(p)
-	if p.Shape != nil {
-		ways = p.Shape.Ways
-	}
+	up, r := at.UpM, reach(p)
 	switch {
+	case p.Shape == nil && at.near(Place{}):
+		return "centre"
+	case p.Shape == nil:
+		return "a place in a shape that is not known"
 	case p.Shape.Mixed():
 		return "anywhere: one temperature throughout"
 	case p.Shape.Oval():
 		return p.aboutAxis(at)
 	case p.Shape.Layered():
 		return p.inLayers(up)
-	case len(ways) > 0 && ways[0].Round():
-		return p.round(math.Abs(up), r[0], ways[0].kind)
+	case p.Shape.Ways[0].Round():
+		return p.round(math.Abs(up), r[0], p.Shape.Ways[0].kind)
 	}
 	if at.near(Place{}) {
 		return "centre"
 	}
 	half, across, along := r[0], r[1], r[2]
-	aroundAxis := len(ways) > 1 && ways[1].Round()
+	aroundAxis := len(p.Shape.Ways) > 1 && p.Shape.Ways[1].Round()
 	if aroundAxis {
 		along = math.Inf(1)
 	}

@@ -108,7 +108,7 @@ func surroundings(steps []model.Step) map[string]bool {
 			switch {
 			case e.Surface.Fixed():
 				has["held"] = true
-			case !e.Surface.NoMedium:
+			case !e.Surface.Insulates():
 				has["film"] = true
 			}
 			if len(e.Medium.C) > 1 {

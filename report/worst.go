@@ -192,7 +192,7 @@ func (x *sheet) drivers() {
 // inTyped is the place of the product as typed that lies where a place of another run does, in proportion to the sizes.
 func (p *Product) inTyped(at model.Place, h *model.History) model.Place {
 	q := p.productOf(h)
-	if q == &p.Product {
+	if q == &p.Product || p.Product.Shape == nil {
 		return at
 	}
 	for i, v := range []*float64{&at.UpM, &at.AcrossM, &at.AlongM}[:len(p.Product.Shape.Ways)] {

@@ -41,7 +41,7 @@ func (f fitting) fitTo(p *model.Product, steps []model.Step, first int, on, c []
 	job := fit.Job{Product: *p, Steps: steps, Conductivity: f.conductivity}
 	var names []string
 	for i := first; i < len(steps) && f.film; i++ {
-		if s := steps[i].Surface; !s.Fixed() && !s.NoMedium {
+		if s := steps[i].Surface; !s.Fixed() && !s.Insulates() {
 			job.Films, names = append(job.Films, []int{i}), append(names, steps[i].Name)
 		}
 	}

@@ -116,7 +116,7 @@ func surroundedBy(p *workbook.Product) (lo, hi, film float64, whole bool) {
 			lo, hi = min(lo, c), max(hi, c)
 		}
 		switch {
-		case e.Surface != nil && e.Surface.NoMedium:
+		case e.Surface.Insulates():
 		case e.Surface.FilmTyped() && e.FilmW != nil:
 			film = max(film, *e.FilmW)
 		default:

@@ -104,7 +104,7 @@ func (f *search) prepare() error {
 			if i < 0 || i >= len(j.Steps) {
 				return fmt.Errorf("there is no step %d", i+1)
 			}
-			if s := j.Steps[i].Surface; s.Fixed() || s.NoMedium {
+			if s := j.Steps[i].Surface; s.Fixed() || s.Insulates() {
 				return fmt.Errorf("the step %q has the surroundings %q, which have no film coefficient", j.Steps[i].Name, s.Name)
 			}
 			if w := j.Steps[i].FilmW; w != nil {
