@@ -497,7 +497,8 @@ const farZ = 6
 func (e *settles) answered(s *solver, d *drive, x, tau float64) (a answer) {
 	r := s.radii[d.axis]
 	root := [2]float64{math.Sqrt(e.alpha[0] * tau), math.Sqrt(e.alpha[1] * tau)}
-	depth, far := r-math.Abs(x), r+math.Abs(x) // of both faces
+	one := root[0] == root[1] && d.film[0] == d.film[1] // least and most are the same, as of a food of constant properties
+	depth, far := r-math.Abs(x), r+math.Abs(x)          // of both faces
 	switch {
 	case s.ball != nil:
 		depth = x
@@ -519,7 +520,9 @@ func (e *settles) answered(s *solver, d *drive, x, tau float64) (a answer) {
 		a.most = min(1, max(4*math.Erfc(z), 16*z/(3*math.Sqrt(math.Pi))*math.Exp(-z*z)))
 	case s.kinds[d.axis] == spherical:
 		a.most = d.inSphere(r, math.Abs(x), d.film[1], root[1])
-		a.least = d.inSphere(r, math.Abs(x), d.film[0], root[0])
+		if a.least = a.most; !one {
+			a.least = d.inSphere(r, math.Abs(x), d.film[0], root[0])
+		}
 	case s.kinds[d.axis] == radial:
 		a.most = d.inSphere(r, math.Abs(x), d.film[1], root[1])
 		a.least = d.flat(depth, d.film[0], root[0])
@@ -529,7 +532,10 @@ func (e *settles) answered(s *solver, d *drive, x, tau float64) (a answer) {
 			a.most += e.throughLayers(s, d, far, root[1])
 		}
 	default:
-		a.most, a.least = d.flat(depth, d.film[1], root[1]), d.flat(depth, d.film[0], root[0])
+		a.most = d.flat(depth, d.film[1], root[1])
+		if a.least = a.most; !one {
+			a.least = d.flat(depth, d.film[0], root[0])
+		}
 		if d.side == 0 {
 			a.most += d.flat(far, d.film[1], root[1])
 		}
@@ -604,10 +610,11 @@ func (s *solver) under(b *body, d *drive, p Place) float64 {
 	return [3]float64{p.UpM, p.AcrossM, p.AlongM}[d.axis]
 }
 
-// early keeps the courses of one place.
+// early keeps the courses of a place; what it needs of that place it has until another is asked for.
 type early struct {
 	s   *solver
-	e   *settles
+	at  Place
+	e   *settles // nil: nothing is known of the place yet
 	by  []float64
 	now []answer
 }
@@ -618,9 +625,10 @@ func (k *early) keep(h *History, p Place, c, t float64, before func(times, out [
 	if e == nil {
 		return c
 	}
-	if e != k.e {
-		k.e, k.by, k.now = e, make([]float64, len(e.before())), make([]answer, len(e.drives))
-		before(e.before(), k.by)
+	if e != k.e || p != k.at {
+		times := e.before()
+		k.at, k.e, k.by, k.now = p, e, slices.Grow(k.by[:0], len(times))[:len(times)], slices.Grow(k.now[:0], len(e.drives))[:len(e.drives)]
+		before(times, k.by)
 		if e.backS == 0 { // a held surface is at its new temperature at this instant
 			k.by[0] = k.s.product.StartC
 		}

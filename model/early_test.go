@@ -351,3 +351,35 @@ func TestThinLayersAreNotHeldBack(t *testing.T) {
 	}
 	t.Logf("worst %.4f K", worst)
 }
+
+// The least answer to a drive is that behind the weakest film in the food that conducts least, the most that behind the strongest in the one that conducts
+// best: one number only where these are one.
+func TestLeastAnswerIsOfTheWeakestFilm(t *testing.T) {
+	const radiusM, depthM, tauS = 0.02, 0.0013, 17.0
+	for _, c := range []struct {
+		name  string
+		alpha [2]float64 // m²/s
+		film  [2]float64 // 1/m
+	}{
+		{"two films", [2]float64{1.3e-7, 1.3e-7}, [2]float64{18, 41}},
+		{"two foods", [2]float64{1.1e-7, 1.5e-7}, [2]float64{33, 33}},
+		{"one of each", [2]float64{1.3e-7, 1.3e-7}, [2]float64{33, 33}},
+	} {
+		for _, kind := range []axisKind{planeHalf, spherical} {
+			e := &settles{alpha: c.alpha, backS: 5}
+			d := &drive{exact: true, film: c.film}
+			s := &solver{product: &Product{Shape: Slab}, kinds: [3]axisKind{kind}, radii: [3]float64{radiusM}}
+			by := func(i int) float64 {
+				root := math.Sqrt(c.alpha[i] * tauS)
+				if kind == spherical {
+					return d.inSphere(radiusM, radiusM-depthM, c.film[i], root)
+				}
+				return d.flat(depthM, c.film[i], root)
+			}
+			a := e.answered(s, d, radiusM-depthM, tauS)
+			if math.Abs(a.least-by(0)) > 1e-12 || math.Abs(a.most-by(1)) > 1e-12 { // the far face of a slab gives nothing yet
+				t.Errorf("%s, axis %d: %g to %g, want %g to %g", c.name, kind, a.least, a.most, by(0), by(1))
+			}
+		}
+	}
+}

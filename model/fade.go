@@ -8,7 +8,12 @@ type fades struct {
 	t    []float64    // rising, s
 	keep [][3]int     // by instant and axis: how many modes are worth keeping; 0: not worked out yet
 	left [3][]float64 // by axis: all modes of each instant
+
+	between [3][maxDegrees]float64 // by axis: what is left at the last instant that is not kept
 }
+
+// whole is what is left along an axis without extent.
+var whole = []float64{1}
 
 // remembers is a field that keeps its fades.
 type remembers interface{ remember(times []float64) }
@@ -42,33 +47,52 @@ func (d *fades) find(from int, t float64) (at int, ok bool) {
 	return from, from < len(d.t) && d.t[from] == t
 }
 
-// at gives what is left of each axis at an instant that is kept, tau after its step began or a medium changed.
-func (d *fades) at(i int, axes *[3]*axis, steps *[3]*axisStep, tau float64) (left [3][]float64) {
+// along gives what is left of an axis at an instant that is kept, tau after its step began or a medium changed.
+func (d *fades) along(a, i int, x *axis, step *axisStep, tau float64) []float64 {
+	if x.kind == lumped {
+		return whole
+	}
 	if d.keep == nil {
 		d.keep = make([][3]int, len(d.t))
-		for a, x := range axes {
-			d.left[a] = make([]float64, len(d.t)*x.n)
-		}
 	}
-	keep := &d.keep[i]
-	for a, x := range axes {
-		left[a] = d.left[a][i*x.n:][:x.n]
-		if keep[a] == 0 {
-			keep[a] = decays(steps[a].rate, tau, left[a])
-		}
-		left[a] = left[a][:keep[a]]
+	if d.left[a] == nil {
+		d.left[a] = make([]float64, len(d.t)*x.n)
 	}
-	return left
+	left, keep := d.left[a][i*x.n:][:x.n], &d.keep[i][a]
+	if *keep == 0 {
+		*keep = decays(step.rate, tau, left)
+	}
+	return left[:*keep]
 }
 
-// on gives what is left of each axis at an instant, as at does where that is kept; kept goes on to it, and e holds what is left elsewhere.
-func (d *fades) on(kept *int, t float64, axes *[3]*axis, steps *[3]*axisStep, tau float64, e *[3][maxDegrees]float64) (left [3][]float64) {
+// elsewhere gives what is left of an axis at an instant that is not kept, until it is asked for another.
+func (d *fades) elsewhere(a int, x *axis, step *axisStep, tau float64) []float64 {
+	if x.kind == lumped {
+		return whole
+	}
+	e := d.between[a][:x.n]
+	return e[:decays(step.rate, tau, e)]
+}
+
+// one gives what is left of the first axis at an instant; kept goes on to it.
+func (d *fades) one(kept *int, t float64, x *axis, step *axisStep, tau float64) []float64 {
 	var ok bool
 	if *kept, ok = d.find(*kept, t); ok {
-		return d.at(*kept, axes, steps, tau)
+		return d.along(0, *kept, x, step, tau)
 	}
-	for a := range left {
-		left[a] = e[a][:decays(steps[a].rate, tau, e[a][:axes[a].n])]
+	return d.elsewhere(0, x, step, tau)
+}
+
+// on gives what is left of each axis at an instant; kept goes on to it.
+func (d *fades) on(kept *int, t float64, axes *[3]*axis, steps *[3]*axisStep, tau float64) (left [3][]float64) {
+	var ok bool
+	*kept, ok = d.find(*kept, t)
+	for a, x := range axes {
+		if ok {
+			left[a] = d.along(a, *kept, x, steps[a], tau)
+		} else {
+			left[a] = d.elsewhere(a, x, steps[a], tau)
+		}
 	}
 	return left
 }

@@ -1,6 +1,9 @@
 package model
 
-import "testing"
+import (
+	"slices"
+	"testing"
+)
 
 // What a history keeps for the instants of its scan changes no temperature by a single bit: at these instants, between them, on either side of
 // changes; asked one by one, backwards, or as a course.
@@ -53,4 +56,45 @@ func fadingChain(shape *Shape) (Product, []Step) {
 		steps[1].Medium = Course{TimesS: []float64{0, 300, 700}, C: []float64{40, 23, 19}}
 	}
 	return p, steps
+}
+
+// What a history keeps of the place that it was asked for last changes no temperature by a single bit: places asked for in turn, by the instant and as
+// courses, are as by histories that were asked for nothing else.
+func TestPlacesInTurn(t *testing.T) {
+	for _, shape := range []*Shape{Slab, Cylinder, Sphere, ShortCylinder, Brick, LayeredSlab, Spheroid} {
+		t.Run(shape.Name, func(t *testing.T) {
+			p, steps := fadingChain(shape)
+			if shape == LayeredSlab {
+				p.Layers = []Layer{{Food: p.Food, ThicknessM: 0.03, BelowM2KW: 0.01}, {Food: p.Food, ThicknessM: 0.02}}
+			}
+			fresh := func() *History {
+				h, err := Solve(p, steps, Options{})
+				if err != nil {
+					t.Fatal(err)
+				}
+				return h
+			}
+			h := fresh()
+			spots := h.Scan().Spots
+			places := []Place{spots[0].Place, spots[len(spots)/2].Place, spots[len(spots)-1].Place}
+			times := []float64{0, 3, 11, 900, 2500, 2504, 2530, 3200, 3203, 3215, 9199} // just after changes of surroundings too
+			want, got := make([][]float64, len(places)), make([]float64, len(times))
+			for i, at := range places {
+				want[i] = make([]float64, len(times))
+				fresh().Course(at, times, want[i])
+			}
+			for k, now := range times {
+				for i, at := range places {
+					if c := h.At(at, now); c != want[i][k] {
+						t.Errorf("%v at %g s: %v in turn, %v alone", at, now, c, want[i][k])
+					}
+				}
+			}
+			for i, at := range places {
+				if h.Course(at, times, got); !slices.Equal(got, want[i]) {
+					t.Errorf("%v: %v in turn, %v alone", at, got, want[i])
+				}
+			}
+		})
+	}
 }

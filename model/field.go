@@ -84,6 +84,62 @@ type tensorStep struct {
 	held   []response   // groups at all nodes; made when first needed
 	even   bool         // there is one medium, which does not change and in the long run holds all of the food at its own temperature
 	lines  []response   // one axis: groups as polynomials, made with held
+	there  standing     // where course was asked for last
+}
+
+// standing is a place in a step: single instants of one place are asked for again and again.
+type standing struct {
+	x    coord
+	v    [3][]float64 // by axis: the modes; nil: nothing was asked for yet
+	s, w []float64    // by medium: the response
+}
+
+// move goes to a place; it tells whether that is another one, whose responses are not worked out.
+func (at *standing) move(x coord, axes *[3]*axis, steps *[3]*axisStep, media int) bool {
+	if at.v[0] != nil && at.x == x {
+		return false
+	}
+	if at.v[0] == nil {
+		all := make([]float64, axes[0].n+axes[1].n+axes[2].n+2*media)
+		for a, ax := range axes {
+			at.v[a], all = all[:ax.n:ax.n], all[ax.n:]
+		}
+		at.s, at.w = all[:media:media], all[media:]
+	}
+	at.x = x
+	for a, ax := range axes {
+		modeValues(ax, steps[a].b, x[a], at.v[a])
+	}
+	return true
+}
+
+// stand gives a place in a step.
+func (f *tensor) stand(st *tensorStep, x coord) *standing {
+	at := &st.there
+	if !at.move(x, &f.axes, &st.ax, len(st.groups)) {
+		return at
+	}
+	n2 := f.axes[2].n
+	for g, r := range st.groups {
+		s, w := 0.0, 0.0
+		i := 0
+		for _, v0 := range at.v[0] {
+			for _, v1 := range at.v[1] {
+				ss, ww := 0.0, 0.0
+				rs, rw := r.s[i:i+n2], r.w[i:i+n2]
+				for k, z := range at.v[2] {
+					ss += rs[k] * z
+					ww += rw[k] * z
+				}
+				xy := v0 * v1
+				s += ss * xy
+				w += ww * xy
+				i += n2
+			}
+		}
+		at.s[g], at.w[g] = s, w
+	}
+	return at
 }
 
 // response is what a medium of 1 K does in the long run: the field s, and the field w by which s lags behind a slope of 1 K/s.
@@ -509,59 +565,31 @@ func (f *tensor) course(x coord, times, out []float64) {
 	if len(times) == 0 {
 		return
 	}
-	var v, e [3][maxDegrees]float64
-	var lin [2][]float64 // by medium: s and w at the place
+	if f.single() {
+		f.along(x, times, out)
+		return
+	}
+	var at *standing
 	var in *tensorStep
-	n0, n1, n2 := f.axes[0].n, f.axes[1].n, f.axes[2].n
-	var buf [2 * 8]float64
+	n1, n2 := f.axes[1].n, f.axes[2].n
+	e := &f.fades.between
 	kept := f.fades.first(times[0])
 	for ti, t := range times {
 		sg := &f.segs[f.segAt(t)]
 		st := sg.step
 		if st != in {
-			in = st
-			for a := range f.axes {
-				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:f.axes[a].n])
-			}
-			lin[0], lin[1] = buf[:0:8], buf[8:8:16]
-			for _, r := range st.groups {
-				s, w := 0.0, 0.0
-				i := 0
-				for a := 0; a < n0; a++ {
-					for b := 0; b < n1; b++ {
-						ss, ww := 0.0, 0.0
-						rs, rw := r.s[i:i+n2], r.w[i:i+n2]
-						for k, z := range v[2][:n2] {
-							ss += rs[k] * z
-							ww += rw[k] * z
-						}
-						xy := v[0][a] * v[1][b]
-						s += ss * xy
-						w += ww * xy
-						i += n2
-					}
-				}
-				lin[0], lin[1] = append(lin[0], s), append(lin[1], w)
-			}
+			in, at = st, f.stand(st, x)
 		}
+		v := &at.v
 		tau := min(max(t-sg.t0, 0), sg.t1-sg.t0)
 		sum := 0.0
 		for g := range st.groups {
-			sum += lin[0][g]*(sg.level[g]+sg.slope[g]*tau) - lin[1][g]*sg.slope[g]
+			sum += at.s[g]*(sg.level[g]+sg.slope[g]*tau) - at.w[g]*sg.slope[g]
 		}
-		left := f.fades.on(&kept, t, &f.axes, &st.ax, tau, &e)
+		left := f.fades.on(&kept, t, &f.axes, &st.ax, tau)
 		extra := 1.0
 		if st.extra > 0 {
 			extra = math.Exp(-st.extra * tau)
-		}
-		if n1*n2 == 1 {
-			y, z := left[1][0]*v[1][0], left[2][0]*v[2][0]
-			c := sg.c[:len(left[0])]
-			for i, x := range left[0] {
-				sum += c[i] * z * y * (x * v[0][i]) * extra
-			}
-			out[ti] = sum
-			continue
 		}
 		for a := range left {
 			for i, x := range left[a] {
@@ -581,6 +609,39 @@ func (f *tensor) course(x coord, times, out []float64) {
 				row += dot * e[1][j]
 			}
 			sum += row * e[0][i] * extra
+		}
+		out[ti] = sum
+	}
+}
+
+// along is course of a food with one axis.
+func (f *tensor) along(x coord, times, out []float64) {
+	var at *standing
+	var in *tensorStep
+	ax := f.axes[0]
+	kept, seg := f.fades.first(times[0]), f.segAt(times[0])
+	for ti, t := range times {
+		for seg < len(f.segs)-1 && t > f.segs[seg].t1 {
+			seg++
+		}
+		sg := &f.segs[seg]
+		st := sg.step
+		if st != in {
+			in, at = st, f.stand(st, x)
+		}
+		tau := min(max(t-sg.t0, 0), sg.t1-sg.t0)
+		sum := 0.0
+		for g := range st.groups {
+			sum += at.s[g]*(sg.level[g]+sg.slope[g]*tau) - at.w[g]*sg.slope[g]
+		}
+		extra := 1.0
+		if st.extra > 0 {
+			extra = math.Exp(-st.extra * tau)
+		}
+		left := f.fades.one(&kept, t, ax, st.ax[0], tau)
+		c, v := sg.c[:len(left)], at.v[0][:len(left)]
+		for i, x := range left {
+			sum += c[i] * (x * v[i]) * extra
 		}
 		out[ti] = sum
 	}
@@ -613,7 +674,7 @@ func (f *tensor) at(t float64) snapshot {
 	s.tau = min(max(t-s.sg.t0, 0), s.sg.t1-s.sg.t0)
 	if f.single() && s.sg.step.extra == 0 {
 		if i, ok := f.fades.find(f.fades.first(t), t); ok {
-			left := f.fades.at(i, &f.axes, &s.sg.step.ax, s.tau)[0]
+			left := f.fades.along(0, i, f.axes[0], s.sg.step.ax[0], s.tau)
 			for i, c := range s.sg.c[:len(left)] {
 				s.amp[i] = left[i] * c
 			}

@@ -23,6 +23,7 @@ type productStep struct {
 	mediumC float64
 	terms   []productTerm
 	gridB   [3][]float64
+	there   standing // where course was asked for last
 }
 
 // productTerm is weight times a one-axis field in modes for each axis, at t0.
@@ -130,19 +131,18 @@ func (f *product) course(x coord, times, out []float64) {
 	if len(times) == 0 {
 		return
 	}
-	var e, v [3][maxDegrees]float64
+	e := &f.fades.between
 	var in *productStep
 	kept := f.fades.first(times[0])
 	for ti, t := range times {
 		st := f.stepAt(t)
 		if st != in {
 			in = st
-			for a := range f.axes {
-				modeValues(f.axes[a], st.ax[a].b, x[a], v[a][:f.axes[a].n])
-			}
+			st.there.move(x, &f.axes, &st.ax, 0)
 		}
+		v := &st.there.v
 		tau := min(max(t-st.t0, 0), st.t1-st.t0)
-		left := f.fades.on(&kept, t, &f.axes, &st.ax, tau, &e)
+		left := f.fades.on(&kept, t, &f.axes, &st.ax, tau)
 		for a := range left {
 			for i, x := range left[a] {
 				e[a][i] = x * v[a][i]

@@ -809,10 +809,10 @@ func (s *solver) finish(h *History) {
 	s.hulls(h)
 	f := s.main
 	h.settleScan = func(sc *Scan) { s.settled(h, sc) }
+	k := early{s: s}
 	h.Course = func(p Place, times, out []float64) {
 		x := h.body.coord(p)
 		f.course(x, times, out)
-		k := early{s: s}
 		before := func(times, out []float64) { f.course(x, times, out) }
 		for i, t := range times {
 			out[i] = k.keep(h, p, h.within(t, out[i]), t, before)

@@ -81,10 +81,14 @@ func (v *view) stepwise(m measure, x model.Axes, t tilt) model.Axes {
 	return x
 }
 
-// exactly is the course of a place at the instants of the scan, exact wherever it is asked between them.
+// exactly is the course of a place at the instants of the scan, exact wherever it is asked between them. It is remembered: steps come back to where they
+// were, and limits look at the same places.
 func (v *view) exactly(x model.Axes) path {
 	at := v.h.PlaceAt(x)
-	p := path{t: v.c.times, c: make([]float64, len(v.c.times)), at: func(t float64) float64 { return v.h.At(at, t) }}
-	v.h.Course(at, p.t, p.c)
-	return p
+	k := v.c.known(at)
+	if k.scan == nil {
+		k.scan = make([]float64, len(v.c.times))
+		v.h.Course(at, v.c.times, k.scan)
+	}
+	return path{t: v.c.times, c: k.scan, at: k.at}
 }

@@ -210,6 +210,55 @@ func (p path) stay(ivs []interval, r region) spent {
 	return sp
 }
 
+// shortestS is the length of a period above which it counts as one, s: a touch has none.
+const shortestS = 1e-9
+
+// periods is how many periods stay finds. When one begins and ends is asked only of those that could be a touch.
+func (p path) periods(ivs []interval, r region) int {
+	const surelyS = 1e-6 // between two knots within: far more than shortestS, whatever the arithmetic of the crossings leaves
+	lo, hi := r.lo-r.slack, r.hi+r.slack
+	n := 0
+	for _, iv := range ivs {
+		q := p.in(iv).turned(r)
+		last := len(q.t) - 1
+		count := func(first, final int) { // the knots within
+			if q.t[final]-q.t[first] > surelyS {
+				n++
+				return
+			}
+			from, to := q.t[first], q.t[final]
+			if first > 0 {
+				from = q.cross(first-1, r.edge(q.c[first-1]))
+			}
+			if final < last {
+				to = q.cross(final, r.edge(q.c[final+1]))
+			}
+			if to-from > shortestS {
+				n++
+			}
+		}
+		first := -1 // knot within; -1: it is outside
+		for i, c := range q.c {
+			switch in := c >= lo && c <= hi; {
+			case in && first < 0:
+				first = i
+			case in:
+			case first >= 0:
+				count(first, i-1)
+				first = -1
+			case i > 0:
+				if A := q.c[i-1]; (A <= lo && c >= hi || A >= hi && c <= lo) && q.cross(i-1, r.edge(c))-q.cross(i-1, r.edge(A)) > shortestS {
+					n++
+				}
+			}
+		}
+		if first >= 0 {
+			count(first, last)
+		}
+	}
+	return n
+}
+
 // nearK is how close to an end of a region a turn of an exact course is looked at between its knots, K: several times straightK.
 const nearK = 0.2
 
@@ -253,7 +302,7 @@ func (r region) edge(c float64) float64 {
 
 // add counts one more period; a touch has no length and is none.
 func (sp *spent) add(from, to float64) {
-	if to-from <= 1e-9 {
+	if to-from <= shortestS {
 		return
 	}
 	p := period{to - from, from, to}
@@ -327,28 +376,45 @@ type stretch struct{ a, b, ca, cb float64 }
 // refine makes the exact path of a course from its knots: it halves every stretch that is not nearly straight.
 // course fills out with the temperatures at rising times.
 func refine(t, c []float64, course func(t, out []float64), at func(float64) float64) path {
-	var open []stretch
+	open := make([]stretch, 0, len(t))
 	for i := 0; i+1 < len(t); i++ {
 		if t[i+1]-t[i] > leastS {
 			open = append(open, stretch{t[i], t[i+1], c[i], c[i+1]})
 		}
 	}
+	var moreT, moreC []float64
 	for depth := 0; len(open) > 0 && depth < 14; depth++ {
 		mid, out := make([]float64, len(open)), make([]float64, len(open))
 		for i, s := range open {
 			mid[i] = (s.a + s.b) / 2
 		}
 		course(mid, out)
-		var next []stretch
+		n := 0
 		for i, s := range open {
-			if math.Abs(out[i]-(s.ca+s.cb)/2) > straightK && s.b-s.a > 2*leastS {
+			if s.bends(out[i]) {
+				n += 2
+			}
+		}
+		next := make([]stretch, 0, n)
+		for i, s := range open {
+			if s.bends(out[i]) {
 				next = append(next, stretch{s.a, mid[i], s.ca, out[i]}, stretch{mid[i], s.b, out[i], s.cb})
 			}
 		}
-		t, c = merge(t, c, mid, out)
+		if depth == 0 {
+			moreT, moreC = mid, out
+		} else {
+			moreT, moreC = merge(moreT, moreC, mid, out)
+		}
 		open = next
 	}
+	t, c = merge(t, c, moreT, moreC)
 	return path{t: t, c: c, at: at}
+}
+
+// bends tells whether a stretch is halved once more, by the temperature at its middle, °C.
+func (s *stretch) bends(mid float64) bool {
+	return math.Abs(mid-(s.ca+s.cb)/2) > straightK && s.b-s.a > 2*leastS
 }
 
 // merge joins two lists of knots whose times rise.

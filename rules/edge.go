@@ -380,10 +380,10 @@ func rising(xs []float64) []float64 {
 
 // peaked gives the highest knot of a path; where it lies near a level, the true peak beside it is made a knot first.
 func (p path) peaked(level float64) (path, int) {
-	top := 0
-	for i := range p.c {
-		if p.c[i] > p.c[top] {
-			top = i
+	top, most := 0, math.Inf(-1)
+	for i, c := range p.c {
+		if c > most {
+			top, most = i, c
 		}
 	}
 	if p.at == nil || math.Abs(p.c[top]-level) > nearK {

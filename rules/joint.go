@@ -31,7 +31,7 @@ type joint struct {
 // periods is the trait of how many periods a course spends in a region, and of whether it is in it as each of the intervals begins and ends.
 func periods(ivs []interval, r region) trait {
 	return func(p path) int {
-		n := p.stay(ivs, r).count
+		n := p.periods(ivs, r)
 		for _, iv := range ivs {
 			q := p.in(iv)
 			for _, c := range []float64{q.c[0], q.c[len(q.c)-1]} {

@@ -126,9 +126,22 @@ func (c *courses) insert(times []float64) {
 
 // known is what has been worked out of the exact course of a place: by step, and where it was asked between.
 type known struct {
+	scan   []float64 // at the instants of the scan; nil until asked for
 	pieces []path
+	joined path     // of the pieces that were asked for last
+	within interval // for which they were
 	at     func(t float64) float64
 	nodes  func(from, to float64) [5]float64
+}
+
+// known is what has been worked out of a place.
+func (c *courses) known(p model.Place) *known {
+	k := c.exact[p]
+	if k == nil {
+		k = &known{at: c.asked(p), nodes: c.askedNodes(p)}
+		c.exact[p] = k
+	}
+	return k
 }
 
 // path is the exact course of a place over the steps that an interval touches.
@@ -136,10 +149,11 @@ func (c *courses) path(p model.Place, within interval) path {
 	if c.whole != nil {
 		return *c.whole
 	}
-	k := c.exact[p]
-	if k == nil {
-		k = &known{pieces: make([]path, max(1, len(c.h.Spans))), at: c.asked(p), nodes: c.askedNodes(p)}
-		c.exact[p] = k
+	k := c.known(p)
+	if k.pieces == nil {
+		k.pieces = make([]path, max(1, len(c.h.Spans)))
+	} else if k.within == within {
+		return k.joined
 	}
 	var whole path
 	for i := range k.pieces {
@@ -151,25 +165,31 @@ func (c *courses) path(p model.Place, within interval) path {
 			continue
 		}
 		if k.pieces[i].t == nil {
-			k.pieces[i] = c.piece(p, span, k.at)
+			k.pieces[i] = c.piece(p, span, k)
 		}
 		whole = whole.then(k.pieces[i])
 	}
 	if whole.at != nil {
 		whole.nodes = k.nodes
 	}
+	k.joined, k.within = whole, within
 	return whole
 }
 
 // piece is the exact course of a place over one step.
-func (c *courses) piece(p model.Place, span interval, at func(t float64) float64) path {
-	q := path{t: c.times, c: c.times}.in(span)
-	out := make([]float64, len(q.t))
-	c.h.Course(p, q.t, out)
-	if c.h.Recorded {
-		return path{t: q.t, c: out}
+func (c *courses) piece(p model.Place, span interval, k *known) path {
+	q := path{t: c.times, c: k.scan}
+	if k.scan == nil {
+		q.c = c.times
 	}
-	return refine(q.t, out, func(t, out []float64) { c.h.Course(p, t, out) }, at)
+	if q = q.in(span); k.scan == nil {
+		q.c = make([]float64, len(q.t))
+		c.h.Course(p, q.t, q.c)
+	}
+	if c.h.Recorded {
+		return path{t: q.t, c: q.c}
+	}
+	return refine(q.t, q.c, func(t, out []float64) { c.h.Course(p, t, out) }, k.at)
 }
 
 // then joins a path to one that begins where it ends.

@@ -7,6 +7,7 @@ import (
 	"io"
 	"path/filepath"
 	"runtime"
+	"runtime/debug"
 	"slices"
 	"sync"
 
@@ -51,6 +52,10 @@ be used; 3 the results could not be written, or a fault of the program.`,
 	return cmd
 }
 
+// sizeGarbage is the percentage of live memory by which a search lets garbage grow: it holds little, and makes much. With the usual 100 it
+// takes a tenth more time, with 400 a twentieth less, but a thousand searches then take 0.7 GB.
+const sizeGarbage = 200
+
 // sizes is the command size.
 func sizes(cmd *cobra.Command, name string, o *sizeOptions, files *shelf) error {
 	plan, err := workbook.Read(name)
@@ -75,6 +80,7 @@ func sizes(cmd *cobra.Command, name string, o *sizeOptions, files *shelf) error 
 		return &failure{exitInput, errors.New("the plan has no product to calculate")}
 	}
 	r := &runner{plan: plan, head: head, options: &checkOptions{}}
+	defer debug.SetGCPercent(debug.SetGCPercent(sizeGarbage))
 	found, unfit, err := r.sizes(cmd.Context(), o)
 	if err != nil {
 		return err

@@ -9,6 +9,7 @@ import (
 	"slices"
 	"strings"
 	"sync"
+	"sync/atomic"
 
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
@@ -195,23 +196,12 @@ func (s *search) every() []int {
 func (s *search) solve(places [][]float64, due [][]int) ([][]rules.Finding, error) {
 	found, errs := make([][]rules.Finding, len(places)), make([]error, len(places))
 	var working sync.WaitGroup
-	slots := make(chan struct{}, runtime.GOMAXPROCS(0))
-	for i, at := range places {
-		slots <- struct{}{}
+	var taken atomic.Int64
+	for range min(runtime.GOMAXPROCS(0), len(places)) {
 		working.Go(func() {
-			defer func() {
-				if fault := recover(); fault != nil {
-					errs[i] = fmt.Errorf("fault of the program at its unfavourable ends: %v", fault)
-				}
-				<-slots
-			}()
-			q := s.p.Varied(at)
-			run, err := s.r.predict(&q, s.options)
-			if err != nil {
-				errs[i] = s.refusal(at, err)
-				return
+			for i := int(taken.Add(1)) - 1; i < len(places); i = int(taken.Add(1)) - 1 {
+				found[i], errs[i] = s.solveOne(places[i], due[i])
 			}
-			found[i] = s.judge(run, due[i])
 		})
 	}
 	working.Wait()
@@ -221,6 +211,21 @@ func (s *search) solve(places [][]float64, due [][]int) ([][]rules.Finding, erro
 		}
 	}
 	return found, nil
+}
+
+// solveOne is solve at one place.
+func (s *search) solveOne(at []float64, due []int) (found []rules.Finding, err error) {
+	defer func() {
+		if fault := recover(); fault != nil {
+			err = fmt.Errorf("fault of the program at its unfavourable ends: %v", fault)
+		}
+	}()
+	q := s.p.Varied(at)
+	run, err := s.r.predict(&q, s.options)
+	if err != nil {
+		return nil, s.refusal(at, err)
+	}
+	return s.judge(run, due), nil
 }
 
 // judge judges a run by some of the limits.
