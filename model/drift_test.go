@@ -5,31 +5,40 @@ import (
 	"testing"
 )
 
-// TestDrifted: what a step leaves open in a stage that drifts is taken so that the food moves fastest, to the side of its surroundings; what is typed, other
-// stages and covered food stay as they are.
+// TestDrifted: what a step leaves open is taken to the side that a way asks for; what is typed, what no way takes and covered food stay as they are, and
+// where the surroundings lie on the other side of the food nothing brings it nearer to them.
 func TestDrifted(t *testing.T) {
-	yes, no, film, walls, rh, wrap := true, false, 9.0, 31.0, 40.0, 0.02
+	yes, no, film, walls, rh, damp, wrap := true, false, 9.0, 31.0, 40.0, 90.0, 0.02
 	for _, x := range []struct {
 		name   string
 		stage  *Stage
 		startC float64
+		way    Drift
 		e      Exposure
-		moist  bool
 		want   Exposure // what it becomes; FilmFactor 0: as it was
 		open   bool
 	}{
-		{"hot, blank", Rest, 70, Exposure{Surface: StillAir}, true, Exposure{FilmFactor: 1.25, RadiatingC: ptr(20.0), Wet: &yes, RH: ptr(0.0)}, true},
-		{"cold, wet", HoldCold, 3, Exposure{Surface: MovingAir, AirMS: &film, Wet: &yes}, true, Exposure{FilmFactor: 1.25, RadiatingC: ptr(24.0), Wet: &yes, RH: ptr(100.0)}, true},
-		{"hot, without moisture", Rest, 70, Exposure{Surface: StillAir}, false, Exposure{FilmFactor: 1.25, RadiatingC: ptr(20.0)}, true},
-		{"hot, dry: nothing condenses", HoldHot, 70, Exposure{Surface: StillAir, Wet: &no}, true, Exposure{FilmFactor: 1.25, RadiatingC: ptr(20.0), Wet: &no}, true},
-		{"cold, dry: vapour condenses", Store, 3, Exposure{Surface: StillAir, Wet: &no}, true, Exposure{FilmFactor: 1.25, RadiatingC: ptr(24.0), Wet: &no, RH: ptr(100.0)}, true},
-		{"wrapped", Rest, 70, Exposure{Surface: StillAir, Cover: TightWrap, WrapM2KW: &wrap}, true, Exposure{FilmFactor: 1.25, RadiatingC: ptr(20.0)}, true},
-		{"film varied already", Rest, 70, Exposure{Surface: StillAir, FilmFactor: 0.8}, false, Exposure{FilmFactor: 1, RadiatingC: ptr(20.0)}, true},
-		{"all typed", Rest, 70, Exposure{Surface: StillAir, FilmW: &film, RadiatingC: &walls, Wet: &yes, RH: &rh}, true, Exposure{FilmW: &film, RadiatingC: &walls, Wet: &yes, RH: &rh}, false},
-		{"water", HoldHot, 70, Exposure{Surface: WaterBath}, true, Exposure{FilmW: ptr(1000.0)}, true},
-		{"a film for everything", Rest, 70, Exposure{Surface: Film, FilmW: &film}, true, Exposure{FilmW: &film}, false},
-		{"chilling", Cool, 70, Exposure{Surface: StillAir}, true, Exposure{}, false},
-		{"cooking", Cook, 10, Exposure{Surface: StillAir, Wet: &yes}, true, Exposure{Wet: &yes}, false},
+		{"hot, blank", Rest, 70, Colder, Exposure{Surface: StillAir}, Exposure{FilmFactor: 1.25, RadiatingC: ptr(20.0), Wet: &yes, RH: ptr(0.0)}, true},
+		{"hot, blank, towards heat", Rest, 70, Hotter, Exposure{Surface: StillAir}, Exposure{}, false},
+		{"hot, wet, towards heat: dry air is not", HoldHot, 70, Hotter, Exposure{Surface: StillAir, Wet: &yes}, Exposure{Wet: &yes, RH: ptr(100.0)}, true},
+		{"cold, wet", HoldCold, 3, Hotter, Exposure{Surface: MovingAir, AirMS: &film, Wet: &yes}, Exposure{FilmFactor: 1.25, RadiatingC: ptr(24.0), Wet: &yes, RH: ptr(100.0)}, true},
+		{"cold, towards cold: it evaporates", Rest, 19.5, Colder, Exposure{Surface: StillAir}, Exposure{Wet: &yes, RH: ptr(0.0)}, true},
+		{"between the ends of the air", Store, 22, Hotter, Exposure{Surface: StillAir, Wet: &no}, Exposure{FilmFactor: 1.25, RadiatingC: ptr(24.0), Wet: &no, RH: ptr(100.0)}, true},
+		{"hot, dry: nothing evaporates", HoldHot, 70, Colder, Exposure{Surface: StillAir, Wet: &no}, Exposure{FilmFactor: 1.25, RadiatingC: ptr(20.0), Wet: &no}, true},
+		{"cold, dry: vapour condenses", Store, 3, Hotter, Exposure{Surface: StillAir, Wet: &no}, Exposure{FilmFactor: 1.25, RadiatingC: ptr(24.0), Wet: &no, RH: ptr(100.0)}, true},
+		{"cold, humidity typed: nothing evaporates", Store, 19.5, Hotter, Exposure{Surface: StillAir, RH: &rh}, Exposure{FilmFactor: 1.25, RadiatingC: ptr(24.0), RH: &rh}, true},
+		{"cold, damp, film typed: vapour condenses", Store, 19.5, Hotter, Exposure{Surface: StillAir, FilmW: &film, RH: &damp}, Exposure{FilmW: &film, RadiatingC: ptr(24.0), Wet: &yes, RH: &damp}, true},
+		{"wrapped", Rest, 70, Colder, Exposure{Surface: StillAir, Cover: TightWrap, WrapM2KW: &wrap}, Exposure{FilmFactor: 1.25, RadiatingC: ptr(20.0)}, true},
+		{"film varied already", Rest, 70, Colder, Exposure{Surface: StillAir, Wet: &no, FilmFactor: 0.8}, Exposure{FilmFactor: 1, RadiatingC: ptr(20.0), Wet: &no}, true},
+		{"all typed", Rest, 70, Colder, Exposure{Surface: StillAir, FilmW: &film, RadiatingC: &walls, Wet: &yes, RH: &rh}, Exposure{FilmW: &film, RadiatingC: &walls, Wet: &yes, RH: &rh}, false},
+		{"water", HoldHot, 70, Colder, Exposure{Surface: WaterBath}, Exposure{FilmW: ptr(1000.0)}, true},
+		{"a film for everything", Rest, 70, Colder, Exposure{Surface: Film, FilmW: &film}, Exposure{FilmW: &film}, false},
+		{"chilling before a heating", Cool, 70, Colder, Exposure{Surface: StillAir, Wet: &no}, Exposure{FilmFactor: 1.25, RadiatingC: ptr(20.0), Wet: &no}, true},
+		{"the last chill", Cool, 70, Earlier, Exposure{Surface: StillAir}, Exposure{}, false},
+		{"chilling", Cool, 70, Hotter, Exposure{Surface: StillAir}, Exposure{}, false},
+		{"a chill that warms", Cool, 19.5, Hotter, Exposure{Surface: StillAir}, Exposure{FilmFactor: 1.25, RadiatingC: ptr(24.0), Wet: &yes, RH: ptr(100.0)}, true},
+		{"cooking", Cook, 10, Colder, Exposure{Surface: StillAir, Wet: &yes}, Exposure{Wet: &yes}, false},
+		{"cooking, before a chill", Cook, 10, Hotter, Exposure{Surface: StirredWater}, Exposure{FilmW: ptr(1000.0)}, true},
 	} {
 		t.Run(x.name, func(t *testing.T) {
 			p, _ := plain()
@@ -41,7 +50,7 @@ func TestDrifted(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			out, open := Drifted(&p, steps, ran, x.moist)
+			out, open := Drifted(&p, steps, ran, x.way)
 			same := func(a, b *float64) bool { return (a == nil) == (b == nil) && (a == nil || *a == *b) }
 			for _, got := range []*Exposure{&out[0].Exposure, &out[0].Faces[0].Exposure} {
 				if open != x.open || !same(got.FilmW, x.want.FilmW) || math.Abs(got.FilmFactor-x.want.FilmFactor) > 1e-9 || !same(got.RadiatingC, x.want.RadiatingC) || !same(got.RH, x.want.RH) ||
@@ -53,5 +62,23 @@ func TestDrifted(t *testing.T) {
 				t.Error("the plan's own step has changed")
 			}
 		})
+	}
+}
+
+// TestWayTakes: a chill is slow and safe for itself, not for a heating that comes after it nor, where a colder one follows, for a clock that starts in it.
+func TestWayTakes(t *testing.T) {
+	chain := []Step{{Stage: Cook}, {Stage: Rest}, {Stage: Cool}, {Stage: Freeze}, {Stage: Store}, {Stage: Reheat}}
+	for way, want := range map[Drift]string{Colder: "-xxxx-", Earlier: "-xx-x-", Hotter: "xxxxxx"} {
+		got := ""
+		for i := range chain {
+			if way.Takes(chain, i) {
+				got += "x"
+			} else {
+				got += "-"
+			}
+		}
+		if got != want {
+			t.Errorf("way %d takes %s, want %s", way, got, want)
+		}
 	}
 }

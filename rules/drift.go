@@ -7,42 +7,63 @@ import (
 	"slowpoint/model"
 )
 
-// drifts tells whether a limit may be met only because food drifts slowly: it is about a stage that keeps food or lets it stand, or, where it
-// names none, about staying at a temperature, or about heat that no cook or reheat gave.
-func (l *Limit) drifts(h *model.History) bool {
-	switch l.Kind {
-	case Duration, Delay, Humidity, Stated, Falling:
-		return false
+// ways gives the sides to which food may move sooner than calculated against a limit: what asks for heat is less so where food comes out of the steps
+// before, or stays, colder; what asks for cold where it does hotter; and a clock that starts as food falls to a temperature where it starts earlier.
+func (l *Limit) ways() []model.Drift {
+	switch {
+	case same(l.Where.Name, "medium"):
+		return nil
+	case l.Kind == Hold && l.ToC != nil, l.Kind == StayBelow, l.Kind == FreezeHold:
+		return []model.Drift{model.Hotter}
+	case l.Kind == Hold, l.Kind == HoldTable, l.Kind == Lethality, l.Kind == StayAbove:
+		return []model.Drift{model.Colder}
+	case l.Kind == HeatWithin, l.Kind == ByTheEnd && l.FromC != nil:
+		return []model.Drift{model.Colder, model.Hotter} // a clock may start earlier
+	case l.Kind == CoolWithin, l.Kind == ByTheEnd, l.Kind == Band, l.Kind == Outside, l.Kind == Falling:
+		return []model.Drift{model.Earlier, model.Hotter}
+	case l.Kind == Duration, l.Kind == Delay: // a step with Until ends sooner or later
+		return []model.Drift{model.Colder, model.Hotter}
 	}
-	if same(l.Where.Name, "medium") {
-		return false
-	}
-	stays := slices.Contains([]*Kind{StayAbove, StayBelow, Outside, Band, ByTheEnd}, l.Kind)
-	heated := false
-	for _, sp := range h.Spans {
-		switch {
-		case sp.Step == nil:
-		case model.Drifts(sp.Step.Stage) && len(l.Stages) > 0:
-			if slices.Contains(l.Stages, sp.Step.Stage) {
-				return true
-			}
-		case model.Drifts(sp.Step.Stage):
-			if stays || !heated && l.Kind != CoolWithin {
-				return true
-			}
+	return nil
+}
+
+// takes tells whether a way takes a step that begins before the last one that a limit is about has ended: what comes later says nothing of it.
+func (l *Limit) takes(way model.Drift, h *model.History) bool {
+	var steps []model.Step
+	last, until := -1, false
+	for i, sp := range h.Spans {
+		if sp.Step == nil {
+			return false
 		}
-		heated = heated || sp.Step != nil && (sp.Step.Stage == model.Cook || sp.Step.Stage == model.Reheat)
+		steps = append(steps, *sp.Step)
+		if len(l.Stages) == 0 || l.Then == sp.Step.Stage || slices.Contains(l.Stages, sp.Step.Stage) {
+			last = i
+		}
+		until = until || sp.Step.UntilC != nil
+	}
+	if (l.Kind == Duration || l.Kind == Delay) && !until {
+		return false
+	}
+	for i := range last + 1 {
+		if way.Takes(steps, i) {
+			return true
+		}
 	}
 	return false
 }
 
-// drifted weighs a met finding against that of the run in which the food drifts as fast as what the plan leaves open allows: met in both, it has the
-// lesser room of both in temperature; else it cannot be told.
+// drifted weighs a finding that is met, or does not apply, against that of a run whose steps are taken to one side as far as their plan leaves it open:
+// met in both, it has the lesser room of both in temperature; missed in the other, it cannot be told.
 func (f *Finding) drifted(g *Finding) {
 	if g.Verdict == Met || g.Verdict == NotApplicable {
 		f.narrowed(g, say("note margin drift", nil))
 		return
 	}
-	f.Verdict, f.MarginK, f.MarginS, f.MarginPlace, f.CarryOver = CannotTell, nil, nil, "", ""
-	f.Why = say("drift", holes{"met": strings.TrimSuffix(f.Why, "."), "fast": strings.TrimSuffix(g.Why, ".")})
+	f.open(say("drift", holes{"met": strings.TrimSuffix(f.Why, "."), "fast": strings.TrimSuffix(g.Why, ".")}))
+}
+
+// open makes a finding one that cannot be told.
+func (f *Finding) open(why string) {
+	f.Verdict, f.MarginK, f.MarginS, f.MarginPlace, f.CarryOver, f.StillWarm = CannotTell, nil, nil, "", "", ""
+	f.Why = why
 }

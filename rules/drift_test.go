@@ -7,8 +7,8 @@ import (
 	"slowpoint/model"
 )
 
-// TestDrift: a limit on food that stands or is kept is met only if it is met too where the food drifts as fast as what the plan leaves open allows; the other
-// run is asked for by no other limit.
+// TestDrift: a limit on food that stands or is kept is met only if it is met too where the food drifts as fast as what the plan leaves open allows, and so is
+// one whose clock starts there; the other runs are asked for by no other limit.
 func TestDrift(t *testing.T) {
 	chain := func(start, rest float64, cook bool) *model.History {
 		q := model.Properties{KWmK: 0.47, RhoKgM3: 1050, CJkgK: 3500}
@@ -37,16 +37,22 @@ func TestDrift(t *testing.T) {
 		{"stay above, missed anyway", Limit{Kind: StayAbove, FromC: c(79), Stages: st(model.Rest)}, slow, fast, false, NotMet},
 		{"hold in the rest", Limit{Kind: Hold, FromC: c(60), TimeS: c(1200), Counting: Continuous, Stages: st(model.Rest)}, slow, fast, true, CannotTell},
 		{"hold, no stage, nothing heated", Limit{Kind: Hold, FromC: c(60), TimeS: c(1200), Counting: Continuous}, slow, fast, true, CannotTell},
-		{"hold, no stage, cooked", Limit{Kind: Hold, FromC: c(60), TimeS: c(600), Counting: Continuous}, chain(10, 5, true), chain(10, 30, true), false, Met},
-		{"by the end of the rest", Limit{Kind: ByTheEnd, FromC: c(50), Stages: st(model.Rest)}, slow, fast, true, CannotTell},
-		{"by the end of the chill", Limit{Kind: ByTheEnd, ToC: c(21), Stages: st(model.Cool)}, slow, fast, false, Met},
-		{"cooling", Limit{Kind: CoolWithin, FromC: c(60), ToC: c(21), TimeS: c(7200), Clock: Clock{Crossing: true}, Stages: st(model.Cool)}, slow, fast, false, Met},
+		{"hold, no stage, cooked", Limit{Kind: Hold, FromC: c(60), TimeS: c(600), Counting: Continuous}, chain(10, 5, true), chain(10, 30, true), true, Met},
+		{"hold in the cook: nothing stood before", Limit{Kind: Hold, FromC: c(60), TimeS: c(600), Counting: Continuous, Stages: st(model.Cook)}, chain(10, 5, true), chain(10, 30, true), false, Met},
+		{"by the end of the chill", Limit{Kind: ByTheEnd, ToC: c(21), Stages: st(model.Cool)}, slow, fast, true, Met},
+		{"cooling, whose clock starts in the rest", Limit{Kind: CoolWithin, FromC: c(60), ToC: c(21), TimeS: c(2800), Clock: Clock{Crossing: true}, Stages: st(model.Cool)}, slow, fast, true, CannotTell},
 		{"nothing is left open", Limit{Kind: StayAbove, FromC: c(60), Stages: st(model.Rest)}, slow, nil, true, Met},
 	} {
 		t.Run(x.name, func(t *testing.T) {
 			asked := false
 			x.l.Name, x.l.Applies = "L", all
-			s := Subject{Product: "P", History: x.h, Drift: func() *model.History { asked = true; return x.fast }}
+			s := Subject{Product: "P", History: x.h, Drift: func(model.Drift) ([]Run, error) {
+				asked = true
+				if x.fast == nil {
+					return nil, nil
+				}
+				return []Run{{History: x.fast}}, nil
+			}}
 			f := Judge([]Limit{x.l}, nil, s).Findings[0]
 			if f.Verdict != x.verdict || asked != x.asks {
 				t.Errorf("%v, asked %v; want %v, %v: %s", f.Verdict, asked, x.verdict, x.asks, f.Why)
@@ -57,7 +63,7 @@ func TestDrift(t *testing.T) {
 		})
 	}
 	met := Limit{Name: "L", Kind: StayAbove, FromC: c(30), Stages: st(model.Rest), Applies: all}
-	with := Judge([]Limit{met}, nil, Subject{Product: "P", History: slow, Drift: func() *model.History { return fast }}).Findings[0]
+	with := Judge([]Limit{met}, nil, Subject{Product: "P", History: slow, Drift: func(model.Drift) ([]Run, error) { return []Run{{History: fast}}, nil }}).Findings[0]
 	own := Judge([]Limit{met}, nil, Subject{Product: "P", History: fast}).Findings[0]
 	if *with.MarginK != *own.MarginK {
 		t.Errorf("room %g K, want that of the faster run, %g K", *with.MarginK, *own.MarginK)

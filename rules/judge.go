@@ -5,6 +5,8 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+
+	"slowpoint/model"
 )
 
 // same compares two words as a person would: without regard to case and surrounding blanks.
@@ -27,8 +29,7 @@ func Conclude(findings []Finding, groups []Group) Judgement {
 func Find(limits []Limit, s Subject) []Finding {
 	var out []Finding
 	usual := newCourses(s.History)
-	var drift *courses
-	asked := false
+	drifts := map[model.Drift]drift{}
 	further := make([]*courses, len(s.Further))
 	for i := range s.Further {
 		further[i] = newCourses(s.Further[i].History)
@@ -50,13 +51,23 @@ func Find(limits []Limit, s Subject) []Finding {
 				f.carriedOver(g.CarryOver)
 			}
 		}
-		if f.Verdict == Met && s.Drift != nil && l.drifts(s.History) {
-			if !asked {
-				drift, asked = s.drift(), true
+		for _, way := range l.ways() {
+			if f.Verdict != Met && f.Verdict != NotApplicable || s.Drift == nil || !l.takes(way, s.History) {
+				continue
 			}
-			if drift != nil {
-				g := judgeOne(l, drift)
-				f.drifted(&g)
+			d, asked := drifts[way]
+			if !asked {
+				d = s.drift(way)
+				drifts[way] = d
+			}
+			for _, c := range d.runs {
+				if f.Verdict != CannotTell {
+					g := judgeOne(l, c)
+					f.drifted(&g)
+				}
+			}
+			if d.err != nil && f.Verdict == Met {
+				f.open(say("drift unsolved", holes{"met": strings.TrimSuffix(f.Why, "."), "why": strings.TrimSuffix(d.err.Error(), ".")}))
 			}
 		}
 		out = append(out, f)
@@ -64,12 +75,20 @@ func Find(limits []Limit, s Subject) []Finding {
 	return out
 }
 
-// drift prepares the run in which the food drifts fastest; nil if there is none.
-func (s *Subject) drift() *courses {
-	if h := s.Drift(); h != nil {
-		return newCourses(h)
+// drift is the runs of steps taken to a side, or why they cannot be calculated.
+type drift struct {
+	runs []*courses
+	err  error
+}
+
+// drift prepares the runs of a way; none where nothing is left open.
+func (s *Subject) drift(way model.Drift) drift {
+	runs, err := s.Drift(way)
+	d := drift{err: err}
+	for i := range runs {
+		d.runs = append(d.runs, newCourses(runs[i].History))
 	}
-	return nil
+	return d
 }
 
 // narrowed takes the margin in temperature of another run in which the limit is met as well, where that is smaller: the one with less room in time

@@ -191,7 +191,7 @@ type Subject struct {
 	Family  string
 	History *model.History
 	Further []Run
-	Drift   func() *model.History // the run in which it drifts fastest (model.Drifted), asked for only where a limit needs it; nil, or of nil: none
+	Drift   func(model.Drift) ([]Run, error) // the runs of its steps taken to a side (model.Drifted), asked for only where a limit needs them; nil, or of none: none
 }
 
 // Judgement is everything that the limits say of a product.

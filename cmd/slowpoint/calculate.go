@@ -2,7 +2,6 @@ package main
 
 import (
 	"slices"
-	"sync"
 
 	"slowpoint/cmd/slowpoint/workbook"
 	"slowpoint/model"
@@ -20,7 +19,7 @@ type prediction struct {
 	product *workbook.Product
 	history *model.History
 	further []rules.Run
-	drift   func() *model.History
+	drift   func(model.Drift) ([]rules.Run, error)
 }
 
 // predict makes every run of a product that is due.
@@ -104,21 +103,23 @@ func further(p *workbook.Product, usual *model.History, o model.Options) ([]rule
 	return out, nil
 }
 
-// drift makes, once it is asked for, the run in which food that stands or is kept drifts as fast as what the plan leaves open allows; where moisture makes
-// it impossible to calculate, without moisture. It gives nil where nothing is left open.
-func drift(p *workbook.Product, usual *model.History, o model.Options) func() *model.History {
-	return sync.OnceValue(func() *model.History {
-		for _, moist := range []bool{true, false} {
-			steps, open := model.Drifted(&p.Product, p.Steps, usual, moist)
-			if !open {
-				return nil
-			}
-			if h, err := model.Solve(p.Product, steps, o); err == nil {
-				return h
-			}
+// drift makes, once they are asked for, the runs of a product whose steps are taken to a side as far as its plan leaves it open, with the further runs
+// that are due; none where nothing is left open.
+func drift(p *workbook.Product, usual *model.History, o model.Options) func(model.Drift) ([]rules.Run, error) {
+	return func(way model.Drift) ([]rules.Run, error) {
+		steps, open := model.Drifted(&p.Product, p.Steps, usual, way)
+		if !open {
+			return nil, nil
 		}
-		return nil
-	})
+		h, err := model.Solve(p.Product, steps, o)
+		if err != nil {
+			return nil, err
+		}
+		q := *p
+		q.Steps = steps
+		runs, err := further(&q, h, o)
+		return append([]rules.Run{{History: h}}, runs...), err
+	}
 }
 
 // calculate makes everything that a product's documents show.
