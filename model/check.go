@@ -352,6 +352,10 @@ func (c *checker) vapour(st *Step, e *Exposure) {
 	if !e.inAir() && e.Surface.meets != vapour {
 		return
 	}
+	if e.RH == nil && e.Medium.RH == nil && e.steamWithAir(st) && slices.Min(e.Medium.C) >= steamLeastC {
+		c.add(e.At, "Relative humidity", "", fmt.Sprintf("Relative humidity is missing: steam of %g °C is colder than boiling (%.1f °C at %g m above the sea), so there is air in it, and how much decides how fast it heats", slices.Min(e.Medium.C), boilingC(st.AltitudeM), st.AltitudeM),
+			"type the relative humidity in the cabinet, the lowest that it keeps; 100 only where it is known to be saturated")
+	}
 	total := pressurePa(st.AltitudeM)
 	tell := func(field, typed string, tC, rh float64) bool {
 		most := 100 * total / satPa(tC)

@@ -135,6 +135,9 @@ func TestCheckRefuses(t *testing.T) {
 		{"steam with air and a film", func(_ *Product, s []Step) {
 			s[0].Surface, s[0].Medium.C, s[0].RH = Steam, []float64{97}, ptr(80.0)
 		}, "Steps row 2", "Film coefficient", "one of the two"},
+		{"steam that holds air, of unknown humidity", func(_ *Product, s []Step) {
+			s[0].Surface, s[0].FilmW, s[0].Medium.C = Steam, nil, []float64{93}
+		}, "Steps row 2", "Relative humidity", "colder than boiling (100.0 °C"},
 		{"water activity above 1", func(p *Product, _ []Step) { p.Food.WaterActivity = ptr(97.0) }, "Foods row 7", "Water activity", "at most 1"},
 		{"loose lid", func(_ *Product, s []Step) { s[0].Cover = LooseLid }, "Steps row 2", "Wrap resistance", "0.04 m²K/W"},
 		{"no film", func(_ *Product, s []Step) { s[0].FilmW = nil }, "Steps row 2", "Film coefficient", "Film coefficient is missing: film needs it"},

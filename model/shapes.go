@@ -111,7 +111,7 @@ var (
 		Help: "water at the boil"}
 	Steam = &Surface{Name: "steam", meets: vapour, May: []string{"Film coefficient", "Relative humidity", "Wrap resistance"},
 		film: stated(steamW, "capped at 1000 W/m²K, below the textbook range of 2500 to 100000 for pure condensing steam (Çengel, Heat Transfer, typical values); air in the steam lowers it strongly, which is calculated from a few degrees below boiling on, and with a relative humidity"),
-		Help: "condensing steam, air vented; colder than boiling, or with a relative humidity below 100 %, steam with air in it, which condenses up to its dew point"}
+		Help: "condensing steam, air vented; colder than boiling it has air in it and needs its Relative humidity; such steam condenses up to its dew point"}
 	ContactPlate = &Surface{Name: "contact plate", meets: fixed, Needs: []string{"Wrap resistance"}, film: stated(math.Inf(1), "contact resistance typed by the user"),
 		Help: "a plate pressed on; its contact goes into Wrap resistance"}
 	Held      = &Surface{Name: "held", meets: fixed, film: stated(math.Inf(1), "the surface is kept at the temperature"), Help: "the surface itself is kept at the temperature"}
