@@ -334,7 +334,7 @@ func TestReadmeExamples(t *testing.T) {
 			line, want, _ := strings.Cut(part, "\n")
 			want = strings.TrimSuffix(want, "\n")
 			ran++
-			if line == "go test ./..." {
+			if line == "go test -timeout 20m ./..." {
 				if !strings.Contains(ci, "\n"+line+"\n") {
 					t.Errorf("%q is not what .ci/test runs", line)
 				}
