@@ -11,23 +11,23 @@ func Drifts(s *Stage) bool {
 // Drift is a side to which steps are taken, as far as their plan leaves it open, because a limit would rather have the other.
 type Drift int
 
-// The ways. What is slow and thus safe in a step itself is fast and unsafe for a step that comes after it.
+// The sides. What is slow and thus safe in a step itself is fast and unsafe for a step that comes after it.
 const (
 	Colder  Drift = iota // all that is no cook and no reheat, for limits that ask for heat: food comes out colder, and is cold sooner
 	Earlier              // the same but the last chill of a chain, for clocks that start as food falls to a temperature
 	Hotter               // all that is no chill, for limits that ask for cold; a chill too where its surroundings are warmer than the food
 )
 
-// Takes tells whether a way takes the step i of a chain to its side, as far as it is left open.
-func (w Drift) Takes(steps []Step, i int) bool {
+// Takes tells whether a side takes the step i of a chain to its side, as far as it is left open.
+func (to Drift) Takes(steps []Step, i int) bool {
 	chills := func(st Step) bool { return st.Stage == Cool || st.Stage == Freeze }
 	switch heats := steps[i].Stage == Cook || steps[i].Stage == Reheat; {
-	case w == Hotter:
+	case to == Hotter:
 		return true
 	case heats:
 		return false
 	}
-	return w == Colder || !chills(steps[i]) || slices.ContainsFunc(steps[i+1:], chills)
+	return to == Colder || !chills(steps[i]) || slices.ContainsFunc(steps[i+1:], chills)
 }
 
 // How far a step is taken to a side as what its plan leaves open allows.
@@ -39,12 +39,12 @@ const (
 // Drifted gives the steps of a chain that ran, with what they leave open taken to one side: films of air a quarter higher and of water high where
 // that moves the food there, radiation to walls as warm or as cold as the air ever is, and, of moist food, evaporation into dry air, or vapour that
 // condenses from damp air. What is typed stays as it is. ok is false where nothing is left open.
-func Drifted(p *Product, steps []Step, ran *History, way Drift) (out []Step, ok bool) {
-	d := drift{product: p, way: way, moist: slices.ContainsFunc(p.Foods(), func(f *Material) bool { return !f.Waterless })}
+func Drifted(p *Product, steps []Step, ran *History, to Drift) (out []Step, ok bool) {
+	d := drift{product: p, to: to, moist: slices.ContainsFunc(p.Foods(), func(f *Material) bool { return !f.Waterless })}
 	out = slices.Clone(steps)
 	for i := range out {
 		st := &out[i]
-		if i >= len(ran.Spans) || !way.Takes(steps, i) {
+		if i >= len(ran.Spans) || !to.Takes(steps, i) {
 			continue
 		}
 		d.foodC = ran.SampleAt([]float64{ran.Spans[i].StartS}).Mean[0]
@@ -60,7 +60,7 @@ func Drifted(p *Product, steps []Step, ran *History, way Drift) (out []Step, ok 
 // drift is what a step of a product is taken to a side with.
 type drift struct {
 	product *Product
-	way     Drift
+	to      Drift
 	moist   bool
 	foodC   float64 // mean of the food as the step starts, °C
 }
@@ -72,7 +72,7 @@ func (d *drift) take(st *Step, e *Exposure) (open bool) {
 		return false
 	}
 	walls, towards := slices.Min(e.Medium.C), false
-	if towards = walls < d.foodC; d.way == Hotter {
+	if towards = walls < d.foodC; d.to == Hotter {
 		walls = slices.Max(e.Medium.C)
 		towards = walls > d.foodC
 	}
@@ -104,7 +104,7 @@ func (d *drift) take(st *Step, e *Exposure) (open bool) {
 
 // dampen does so with moisture.
 func (d *drift) dampen(st *Step, e *Exposure, walls float64, towards bool) (open bool) {
-	hotter, was := d.way == Hotter, *e
+	hotter, was := d.to == Hotter, *e
 	blank := e.RH == nil && e.Medium.RH == nil
 	if yes := true; e.Wet == nil && (!hotter || towards && (blank || e.FilmW != nil && e.dewsOn(st, d.foodC))) {
 		e.Wet, open = &yes, true

@@ -5,7 +5,7 @@ import (
 	"testing"
 )
 
-// TestDrifted: what a step leaves open is taken to the side that a way asks for; what is typed, what no way takes and covered food stay as they are, and
+// TestDrifted: what a step leaves open is taken to the side that is asked for; what is typed, what no side takes and covered food stay as they are, and
 // where the surroundings lie on the other side of the food nothing brings it nearer to them.
 func TestDrifted(t *testing.T) {
 	yes, no, film, walls, rh, damp, wrap := true, false, 9.0, 31.0, 40.0, 90.0, 0.02
@@ -13,7 +13,7 @@ func TestDrifted(t *testing.T) {
 		name   string
 		stage  *Stage
 		startC float64
-		way    Drift
+		to     Drift
 		e      Exposure
 		want   Exposure // what it becomes; FilmFactor 0: as it was
 		open   bool
@@ -50,7 +50,7 @@ func TestDrifted(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			out, open := Drifted(&p, steps, ran, x.way)
+			out, open := Drifted(&p, steps, ran, x.to)
 			same := func(a, b *float64) bool { return (a == nil) == (b == nil) && (a == nil || *a == *b) }
 			for _, got := range []*Exposure{&out[0].Exposure, &out[0].Faces[0].Exposure} {
 				if open != x.open || !same(got.FilmW, x.want.FilmW) || math.Abs(got.FilmFactor-x.want.FilmFactor) > 1e-9 || !same(got.RadiatingC, x.want.RadiatingC) || !same(got.RH, x.want.RH) ||
@@ -65,20 +65,20 @@ func TestDrifted(t *testing.T) {
 	}
 }
 
-// TestWayTakes: a chill is slow and safe for itself, not for a heating that comes after it nor, where a colder one follows, for a clock that starts in it.
-func TestWayTakes(t *testing.T) {
+// TestSideTakes: a chill is slow and safe for itself, not for a heating that comes after it nor, where a colder one follows, for a clock that starts in it.
+func TestSideTakes(t *testing.T) {
 	chain := []Step{{Stage: Cook}, {Stage: Rest}, {Stage: Cool}, {Stage: Freeze}, {Stage: Store}, {Stage: Reheat}}
-	for way, want := range map[Drift]string{Colder: "-xxxx-", Earlier: "-xx-x-", Hotter: "xxxxxx"} {
+	for side, want := range map[Drift]string{Colder: "-xxxx-", Earlier: "-xx-x-", Hotter: "xxxxxx"} {
 		got := ""
 		for i := range chain {
-			if way.Takes(chain, i) {
+			if side.Takes(chain, i) {
 				got += "x"
 			} else {
 				got += "-"
 			}
 		}
 		if got != want {
-			t.Errorf("way %d takes %s, want %s", way, got, want)
+			t.Errorf("side %d takes %s, want %s", side, got, want)
 		}
 	}
 }

@@ -56,6 +56,9 @@ func bareWaterW(c *filmCase) float64 {
 // inWater makes the film of open water: stated low, and told beside it what a bare surface would have.
 func inWater(source string) func(*filmCase) (float64, string) {
 	return func(c *filmCase) (float64, string) {
+		if math.Abs(c.foodC-c.mediumC) < 1 { // it would be small by how small the difference is
+			return waterBathW, source
+		}
 		free, _ := c.shape.inFluid(&c.size)
 		return waterBathW, source + fmt.Sprintf("; a bare surface alone in still water would have about %.0f W/(m²·K) by %s, food surface %.1f °C, water %.1f °C, which nothing but a measurement of your own lets you count on",
 			10*math.Round(bareWaterW(c)/10), free.formula, c.foodC, c.mediumC)

@@ -44,4 +44,8 @@ func TestBareFilmOfWater(t *testing.T) {
 	if w != waterBathW || !strings.Contains(source, "would have about 1050 W/(m²·K) by Churchill & Chu 1975, food surface 70.0 °C, water 43.7 °C") {
 		t.Errorf("%g W/(m²·K): %s", w, source)
 	}
+	c.foodC = c.mediumC + 0.4
+	if _, source = WaterBath.film(c); strings.Contains(source, "bare surface") {
+		t.Errorf("food as warm as the water: %s", source)
+	}
 }

@@ -7,9 +7,9 @@ import (
 	"slowpoint/model"
 )
 
-// ways gives the sides to which food may move sooner than calculated against a limit: what asks for heat is less so where food comes out of the steps
+// sides gives those to which food may move sooner than calculated against a limit: what asks for heat is less so where food comes out of the steps
 // before, or stays, colder; what asks for cold where it does hotter; and a clock that starts as food falls to a temperature where it starts earlier.
-func (l *Limit) ways() []model.Drift {
+func (l *Limit) sides() []model.Drift {
 	switch {
 	case same(l.Where.Name, "medium"):
 		return nil
@@ -27,8 +27,8 @@ func (l *Limit) ways() []model.Drift {
 	return nil
 }
 
-// takes tells whether a way takes a step that begins before the last one that a limit is about has ended: what comes later says nothing of it.
-func (l *Limit) takes(way model.Drift, h *model.History) bool {
+// takes tells whether a side takes a step that begins before the last one that a limit is about has ended: what comes later says nothing of it.
+func (l *Limit) takes(side model.Drift, h *model.History) bool {
 	var steps []model.Step
 	last, until := -1, false
 	for i, sp := range h.Spans {
@@ -45,7 +45,7 @@ func (l *Limit) takes(way model.Drift, h *model.History) bool {
 		return false
 	}
 	for i := range last + 1 {
-		if way.Takes(steps, i) {
+		if side.Takes(steps, i) {
 			return true
 		}
 	}
@@ -53,10 +53,15 @@ func (l *Limit) takes(way model.Drift, h *model.History) bool {
 }
 
 // drifted weighs a finding that is met, or does not apply, against that of a run whose steps are taken to one side as far as their plan leaves it open:
-// met in both, it has the lesser room of both in temperature; missed in the other, it cannot be told.
+// met in both, it has the lesser room of both, in temperature and in time; missed in the other, it cannot be told.
 func (f *Finding) drifted(g *Finding) {
 	if g.Verdict == Met || g.Verdict == NotApplicable {
-		f.narrowed(g, say("note margin drift", nil))
+		note := say("note margin drift", nil)
+		f.narrowed(g, note)
+		if f.Verdict == Met && g.Verdict == Met && f.MarginS != nil && g.MarginS != nil && *g.MarginS < *f.MarginS-tieS {
+			f.MarginS = g.MarginS
+			f.noteOnce(note)
+		}
 		return
 	}
 	f.open(say("drift", holes{"met": strings.TrimSuffix(f.Why, "."), "fast": strings.TrimSuffix(g.Why, ".")}))

@@ -1,6 +1,8 @@
 package rules
 
 import (
+	"errors"
+	"slices"
 	"strings"
 	"testing"
 
@@ -67,5 +69,31 @@ func TestDrift(t *testing.T) {
 	own := Judge([]Limit{met}, nil, Subject{Product: "P", History: fast}).Findings[0]
 	if *with.MarginK != *own.MarginK {
 		t.Errorf("room %g K, want that of the faster run, %g K", *with.MarginK, *own.MarginK)
+	}
+
+	// The room in time is that of the faster run too; of several runs the least, told once.
+	within := Limit{Name: "L", Kind: CoolWithin, FromC: c(60), ToC: c(21), TimeS: c(5000), Clock: Clock{Crossing: true}, Stages: st(model.Cool), Applies: all}
+	between := chain(80, 9, false)
+	with = Judge([]Limit{within}, nil, Subject{Product: "P", History: slow, Drift: func(model.Drift) ([]Run, error) { return []Run{{History: between}, {History: fast}}, nil }}).Findings[0]
+	own = Judge([]Limit{within}, nil, Subject{Product: "P", History: fast}).Findings[0]
+	usual := Judge([]Limit{within}, nil, Subject{Product: "P", History: slow}).Findings[0]
+	if with.Verdict != Met || *with.MarginS != *own.MarginS || !(*own.MarginS < *usual.MarginS-60) {
+		t.Errorf("%v, room %g s, want that of the faster run, %g s, of %g s", with.Verdict, *with.MarginS, *own.MarginS, *usual.MarginS)
+	}
+	for i, note := range with.Notes {
+		if slices.Contains(with.Notes[:i], note) {
+			t.Errorf("twice: %s", note)
+		}
+	}
+	if n := len(slices.DeleteFunc(slices.Clone(with.Notes), func(n string) bool { return !strings.Contains(n, "counts what the plan leaves blank") })); n != 1 {
+		t.Errorf("the lesser room is told %d times: %q", n, with.Notes)
+	}
+
+	// Where the other runs cannot be calculated, neither a limit that is met nor one that does not apply is left so.
+	for _, l := range []Limit{within, {Name: "L", Kind: CoolWithin, FromC: c(95), ToC: c(21), TimeS: c(5000), Clock: Clock{Crossing: true}, Stages: st(model.Cool), Applies: all}} {
+		f := Judge([]Limit{l}, nil, Subject{Product: "P", History: slow, Drift: func(model.Drift) ([]Run, error) { return nil, errors.New("no properties there") }}).Findings[0]
+		if f.Verdict != CannotTell || !strings.Contains(f.Why, "no properties there") {
+			t.Errorf("from %g °C: %v: %s", *l.FromC, f.Verdict, f.Why)
+		}
 	}
 }

@@ -51,14 +51,14 @@ func Find(limits []Limit, s Subject) []Finding {
 				f.carriedOver(g.CarryOver)
 			}
 		}
-		for _, way := range l.ways() {
-			if f.Verdict != Met && f.Verdict != NotApplicable || s.Drift == nil || !l.takes(way, s.History) {
+		for _, side := range l.sides() {
+			if f.Verdict != Met && f.Verdict != NotApplicable || s.Drift == nil || !l.takes(side, s.History) {
 				continue
 			}
-			d, asked := drifts[way]
+			d, asked := drifts[side]
 			if !asked {
-				d = s.drift(way)
-				drifts[way] = d
+				d = s.drift(side)
+				drifts[side] = d
 			}
 			for _, c := range d.runs {
 				if f.Verdict != CannotTell {
@@ -66,7 +66,7 @@ func Find(limits []Limit, s Subject) []Finding {
 					f.drifted(&g)
 				}
 			}
-			if d.err != nil && f.Verdict == Met {
+			if d.err != nil && f.Verdict != CannotTell {
 				f.open(say("drift unsolved", holes{"met": strings.TrimSuffix(f.Why, "."), "why": strings.TrimSuffix(d.err.Error(), ".")}))
 			}
 		}
@@ -75,15 +75,15 @@ func Find(limits []Limit, s Subject) []Finding {
 	return out
 }
 
-// drift is the runs of steps taken to a side, or why they cannot be calculated.
+// drift holds the runs of steps taken to a side, or why they cannot be calculated.
 type drift struct {
 	runs []*courses
 	err  error
 }
 
-// drift prepares the runs of a way; none where nothing is left open.
-func (s *Subject) drift(way model.Drift) drift {
-	runs, err := s.Drift(way)
+// drift prepares the runs of a side; none where nothing is left open.
+func (s *Subject) drift(side model.Drift) drift {
+	runs, err := s.Drift(side)
 	d := drift{err: err}
 	for i := range runs {
 		d.runs = append(d.runs, newCourses(runs[i].History))
@@ -103,7 +103,13 @@ func (f *Finding) narrowed(other *Finding, note string) {
 	if f.MarginPlace == "" && other.PlaceName != f.PlaceName {
 		f.MarginPlace = other.PlaceName
 	}
-	f.Notes = append(f.Notes, note)
+	f.noteOnce(note)
+}
+
+func (f *Finding) noteOnce(note string) {
+	if !slices.Contains(f.Notes, note) {
+		f.Notes = append(f.Notes, note)
+	}
 }
 
 // Worse tells whether a finding is less favourable than another of the same limit: by verdict, then by room in time, then in temperature.

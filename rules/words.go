@@ -151,7 +151,7 @@ var words = map[string]string{
 	"note margin place": "The margin in temperature is that of another place ({place}).",
 	"drift":             "{met}; but that rests on what the plan leaves blank of Radiating temperature, Film coefficient, Surface and Relative humidity in this step and those before: with walls as warm or as cold as the air, films of air a quarter higher, a high film of water and moisture as unfavourable as it may be, {fast}. So it cannot be told.",
 	"drift unsolved":    "{met}; but that rests on what the plan leaves blank of Radiating temperature, Film coefficient, Surface and Relative humidity, and with that taken unfavourably it cannot be calculated: {why}. So it cannot be told.",
-	"note margin drift": "The margin in temperature is what would be left if the walls were as warm or as cold as the air, films of air a quarter higher, films of water high and moisture as unfavourable as what the plan leaves blank allows.",
+	"note margin drift": "The margin counts what the plan leaves blank as unfavourably as it may be: walls as warm or as cold as the air, films of air a quarter higher, films of water high, and moisture.",
 	"note margin run":   "The margin in temperature is that of another of the runs.",
 	"note heatings":     "The process has {count} heatings separated by chilling; each is judged on its own, and the best counts.",
 	"note separated":    "The time is the sum of periods with chilling in between.",

@@ -106,8 +106,8 @@ func further(p *workbook.Product, usual *model.History, o model.Options) ([]rule
 // drift makes, once they are asked for, the runs of a product whose steps are taken to a side as far as its plan leaves it open, with the further runs
 // that are due; none where nothing is left open.
 func drift(p *workbook.Product, usual *model.History, o model.Options) func(model.Drift) ([]rules.Run, error) {
-	return func(way model.Drift) ([]rules.Run, error) {
-		steps, open := model.Drifted(&p.Product, p.Steps, usual, way)
+	return func(to model.Drift) ([]rules.Run, error) {
+		steps, open := model.Drifted(&p.Product, p.Steps, usual, to)
 		if !open {
 			return nil, nil
 		}
