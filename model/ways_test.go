@@ -78,3 +78,21 @@ func TestSizesFollowFromTheWays(t *testing.T) {
 		})
 	}
 }
+
+// What fixes the temperature of a surface has no film: all of it lies in between. It counts as typed where what lies between had to be.
+func TestFixedSurfaces(t *testing.T) {
+	for _, c := range []struct {
+		e      Exposure
+		typed  bool
+		totalW float64 // W/(m²·K)
+	}{
+		{Exposure{Surface: ContactPlate, WrapM2KW: ptr(0.004)}, true, 250},
+		{Exposure{Surface: Held}, false, math.Inf(1)},
+		{Exposure{Surface: Insulated}, false, 0},
+	} {
+		u := c.e.filmUsed(nil, &filmCase{shape: Slab, size: Size{ThicknessM: 0.03}})
+		if u.Typed != c.typed || u.Caution != "" || !(u.TotalW == c.totalW || math.Abs(u.TotalW-c.totalW) < 1e-9) {
+			t.Errorf("%s: typed %v, %g W/(m²·K), %q; want %v, %g", c.e.Surface.Name, u.Typed, u.TotalW, u.Caution, c.typed, c.totalW)
+		}
+	}
+}
