@@ -1,6 +1,7 @@
 package main
 
 import (
+	"reflect"
 	"slices"
 
 	"slowpoint/cmd/slowpoint/workbook"
@@ -104,21 +105,31 @@ func further(p *workbook.Product, usual *model.History, o model.Options) ([]rule
 }
 
 // drift makes, once they are asked for, the runs of a product whose steps are taken to a side as far as its plan leaves it open, with the further runs
-// that are due; none where nothing is left open.
+// that are due; none where nothing is left open. Sides to which the plan leaves the same open share them.
 func drift(p *workbook.Product, usual *model.History, o model.Options) func(model.Drift) ([]rules.Run, error) {
-	return func(to model.Drift) ([]rules.Run, error) {
+	type taken struct {
+		steps []model.Step
+		runs  []rules.Run
+		err   error
+	}
+	var before []taken
+	return func(to model.Drift) (runs []rules.Run, err error) {
 		steps, open := model.Drifted(&p.Product, p.Steps, usual, to)
 		if !open {
 			return nil, nil
 		}
+		if i := slices.IndexFunc(before, func(b taken) bool { return reflect.DeepEqual(b.steps, steps) }); i >= 0 {
+			return before[i].runs, before[i].err
+		}
+		defer func() { before = append(before, taken{steps, runs, err}) }()
 		h, err := model.Solve(p.Product, steps, o)
 		if err != nil {
 			return nil, err
 		}
 		q := *p
 		q.Steps = steps
-		runs, err := further(&q, h, o)
-		return append([]rules.Run{{History: h}}, runs...), err
+		more, err := further(&q, h, o)
+		return append([]rules.Run{{History: h}}, more...), err
 	}
 }
 

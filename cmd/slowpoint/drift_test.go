@@ -6,6 +6,9 @@ import (
 	"path/filepath"
 	"strings"
 	"testing"
+
+	"slowpoint/cmd/slowpoint/workbook"
+	"slowpoint/model"
 )
 
 // TestDriftTold: food that is kept hot in a cool room is not said to meet its limit only because the plan leaves the walls' radiation out; with
@@ -107,5 +110,34 @@ func TestDriftElsewhere(t *testing.T) {
 				t.Errorf("typed:\n%s", text)
 			}
 		})
+	}
+}
+
+// TestDriftIsShared: sides to which a plan leaves the same open are calculated once; others are not taken for them.
+func TestDriftIsShared(t *testing.T) {
+	food := &model.Material{Name: "meat", Source: "test input", Flow: model.FlowsNo, Props: func(float64) model.Properties { return model.Properties{KWmK: 0.48, RhoKgM3: 1050, CJkgK: 3500} }}
+	film, dry := 30.0, false
+	step := func(stage *model.Stage, e model.Exposure, c float64) model.Step {
+		e.Medium = model.Course{TimesS: []float64{0}, C: []float64{c}}
+		return model.Step{Name: stage.Name, Stage: stage, DurationS: 3600, Exposure: e}
+	}
+	p := &workbook.Product{Product: model.Product{Name: "P", Shape: model.Slab, Size: model.Size{ThicknessM: 0.04}, Food: food, StartC: 75},
+		Steps: []model.Step{step(model.Rest, model.Exposure{Surface: model.StillAir, Wet: &dry}, 20), step(model.Cool, model.Exposure{Surface: model.Film, FilmW: &film}, 2),
+			step(model.Store, model.Exposure{Surface: model.StillAir, Wet: &dry}, 55)}}
+	usual, err := model.Solve(p.Product, p.Steps, model.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	runs := drift(p, usual, model.Options{})
+	var h [3]*model.History
+	for i, to := range []model.Drift{model.Colder, model.Earlier, model.Hotter} {
+		got, err := runs(to)
+		if err != nil || len(got) == 0 {
+			t.Fatal(got, err)
+		}
+		h[i] = got[0].History
+	}
+	if h[0] != h[1] || h[0] == h[2] {
+		t.Errorf("colder and earlier are one: %v; colder and hotter: %v", h[0] == h[1], h[0] == h[2])
 	}
 }
