@@ -8,6 +8,7 @@ type spaceAxis struct {
 	w            []float64 // their shares of the volume
 	k            []float64 // n×n, 1/m²: what a Kirchhoff integral at node j adds to the rate at node i
 	fast         float64   // largest rate of decay of k, 1/m²
+	perR2        float64   // one over the radius squared, 1/m²
 	lower, upper *Face
 	face         [2]float64   // what a flow over the lower and upper face adds to the rate of its node, 1/m; 0 where there is none
 	poly         *collocation // nil where the nodes are those of control volumes
@@ -17,11 +18,11 @@ type spaceAxis struct {
 // smooth makes an axis of n nodes with the polynomial through them, for fields without a freezing front.
 func smoothAxis(kind axisKind, radiusM float64, n int, by stretch, faces [2]*Face) *spaceAxis {
 	c := collocationOf(kind, n, by)
-	a := &spaceAxis{kind: kind, n: n, x: c.x, w: c.w, k: make([]float64, n*n), poly: c, lower: faces[0], upper: faces[1]}
+	a := &spaceAxis{kind: kind, n: n, x: c.x, w: c.w, k: make([]float64, n*n), poly: c, lower: faces[0], upper: faces[1], perR2: 1 / (radiusM * radiusM)}
 	for i, k := range c.k {
-		a.k[i] = k / (radiusM * radiusM)
+		a.k[i] = k * a.perR2
 	}
-	a.fast = c.fast / (radiusM * radiusM)
+	a.fast = c.fast * a.perR2
 	a.faces(radiusM)
 	return a
 }

@@ -62,6 +62,8 @@ type collocation struct {
 	b    []float64 // n×n, b[m*n+j]: value at node j in coefficient m
 	d    []float64 // n×n, slope by s at node i of a value at node j
 	k    []float64 // n×n, what a value at node j adds to the rate at node i by conduction: minus stiffness over weight
+	root []float64 // the roots of w
+	sym  []float64 // n×n, −k between values times the roots of the weights, between which it is symmetric
 	fast float64   // largest rate of decay of k
 }
 
@@ -161,6 +163,13 @@ func (c *collocation) stiffness() {
 				c.k[i*n+i] -= c.k[i*n+j]
 			}
 		}
+	}
+	c.root, c.sym = make([]float64, n), make([]float64, n*n)
+	for i, w := range c.w {
+		c.root[i] = math.Sqrt(w)
+	}
+	for i := range c.sym {
+		c.sym[i] = -c.k[i] * (c.root[i/n] / c.root[i%n])
 	}
 	var eig mat.EigenSym
 	eig.Factorize(sym, false)

@@ -162,10 +162,9 @@ func (m *modesMarch) linearize(tau float64) {
 func (a *spaceAxis) modes(mem *slab, alpha float64, films [2]float64) (decay, to, from []float64) {
 	n := a.n
 	sym := mem.take(n * n)
-	for i := 0; i < n; i++ {
-		for j := 0; j < n; j++ {
-			sym[i*n+j] = -alpha * a.k[i*n+j] * math.Sqrt(a.w[i]/a.w[j])
-		}
+	alpha *= a.perR2
+	for i, k := range a.poly.sym {
+		sym[i] = alpha * k
 	}
 	sym[0] += films[0] * a.face[0]
 	sym[n*n-1] += films[1] * a.face[1]
@@ -173,9 +172,9 @@ func (a *spaceAxis) modes(mem *slab, alpha float64, films [2]float64) (decay, to
 	to, from = mem.take(n*n), mem.take(n*n)
 	for i := 0; i < n; i++ {
 		decay[i] = max(0, decay[i])
-		for j := 0; j < n; j++ {
-			to[i*n+j] = v[i*n+j] * math.Sqrt(a.w[j])
-			from[j*n+i] = v[i*n+j] / math.Sqrt(a.w[j])
+		for j, root := range a.poly.root {
+			to[i*n+j] = v[i*n+j] * root
+			from[j*n+i] = v[i*n+j] / root
 		}
 	}
 	return decay, to, from
