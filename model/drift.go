@@ -96,9 +96,6 @@ func (d *drift) take(st *Step, e *Exposure) (open bool) {
 	if !d.moist || e.WrapM2KW != nil || e.Cover == TightWrap || e.Cover == LooseLid {
 		return open
 	}
-	if st.Stage == Cook || st.Stage == Reheat { // a blank humidity is that of dry air there, as the plan is told
-		return open
-	}
 	return d.dampen(st, e, walls, towards) || open
 }
 

@@ -38,6 +38,7 @@ func TestDrifted(t *testing.T) {
 		{"chilling", Cool, 70, Hotter, Exposure{Surface: StillAir}, Exposure{}, false},
 		{"a chill that warms", Cool, 19.5, Hotter, Exposure{Surface: StillAir}, Exposure{FilmFactor: 1.25, RadiatingC: ptr(24.0), Wet: &yes, RH: ptr(100.0)}, true},
 		{"cooking", Cook, 10, Colder, Exposure{Surface: StillAir, Wet: &yes}, Exposure{Wet: &yes}, false},
+		{"cooking wet, before a chill: in damp air", Cook, 10, Hotter, Exposure{Surface: MovingAir, AirMS: &film, RadiatingC: &walls, Wet: &yes}, Exposure{FilmFactor: 1.25, RadiatingC: &walls, Wet: &yes, RH: ptr(100.0)}, true},
 		{"cooking, before a chill", Cook, 10, Hotter, Exposure{Surface: StirredWater}, Exposure{FilmW: ptr(1000.0)}, true},
 	} {
 		t.Run(x.name, func(t *testing.T) {
