@@ -700,9 +700,7 @@ func (s *search) climb(worst []corner) error {
 		for k, c := range worst {
 			next[k] = s.flips(c)
 			if paired[k] {
-				for _, d := range next[k] {
-					next[k] = append(next[k], s.flips(d)...)
-				}
+				next[k] = append(next[k], s.pairs(c)...)
 			}
 			for _, d := range next[k] {
 				list = append(list, ask{d, k})
@@ -738,6 +736,23 @@ func (s *search) flips(c corner) []corner {
 	for i, now := range c {
 		for _, v := range s.ends(i, now) {
 			out = append(out, c.with(i, v))
+		}
+	}
+	return out
+}
+
+// pairs are the corners that differ in two quantities, each at an end of its own.
+func (s *search) pairs(c corner) []corner {
+	var out []corner
+	for i := range c {
+		for _, v := range s.ends(i, c[i]) {
+			for j := range i {
+				for _, w := range s.ends(j, c[j]) {
+					if v != 0 && w != 0 {
+						out = append(out, c.with(i, v).with(j, w))
+					}
+				}
+			}
 		}
 	}
 	return out
