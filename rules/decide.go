@@ -91,7 +91,7 @@ type candidate struct {
 }
 
 // judgePlaces answers a question about every place of the limit and makes the finding of the least favourable one.
-func (v *view) judgePlaces(q question) Finding {
+func (v *view) judgePlaces(q question) (f Finding) {
 	s := v.scope()
 	if s.medium == nil && s.one == nil && len(s.spots) == 0 {
 		return v.blank(CannotTell, s.why)
@@ -105,7 +105,9 @@ func (v *view) judgePlaces(q question) Finding {
 		}
 	}
 	o := cs[best].nominal
-	f := v.finding(o, q)
+	f = v.finding(o, q)
+	goes := v.goes(&f, &cs[best])
+	defer func() { f.Goes = goes }()
 	if s.medium == nil {
 		place := cs[best].place
 		f.Place, f.PlaceName = &place, s.name
@@ -153,6 +155,31 @@ func (v *view) judgePlaces(q question) Finding {
 	}
 	f.Why = v.sentence(&f, o, v.weigh(&f, o, q, s, cs))
 	return f
+}
+
+// goes tells courses apart by how often they pass the temperatures of the limit, how often they fell to that of its clock before it started, and
+// whether the place lies at an edge.
+func (v *view) goes(f *Finding, c *candidate) int {
+	p := c.path.in(v.reach())
+	passes := func(level *float64, until float64) int {
+		n := 0
+		for i := 0; level != nil && i+1 < len(p.c) && p.t[i+1] < until; i++ {
+			if (p.c[i] > *level) != (p.c[i+1] > *level) {
+				n++
+			}
+		}
+		return min(n, 15)
+	}
+	all := math.Inf(1)
+	goes := passes(v.l.FromC, all)<<1 | passes(v.l.ToC, all)<<5 | passes(v.l.Clock.AtC, all)<<9
+	if f.ClockStartS != nil && v.l.clocked() {
+		level := v.l.crossedC()
+		goes |= passes(&level, *f.ClockStartS) << 13
+	}
+	if c.edge != nil {
+		goes |= 1
+	}
+	return goes
 }
 
 // worstOfAll is the index of the least favourable candidate.

@@ -147,6 +147,7 @@ type Finding struct {
 	Cautions    []string   // keys of the report's cautions: "slow come-up lethality", "lethality without floor", "below 60 °C table row", …
 	CarryOver   string     // that the limit is met only by what the food gets after its heating, in a sentence with numbers; "" elsewhere
 	StillWarm   string     // of a limit on cooling that did not apply though the food was warm enough: how warm, in a clause; "" elsewhere
+	Goes        int        // how the course of Place goes through the temperatures of the limit; where it differs between two runs there is an edge between them
 	Run         string     // the further run that this is the finding of; "" for the usual one
 }
 

@@ -30,8 +30,12 @@ const (
 // proportion between these.
 type corner []float64
 
-// parts is how many there are of the way from the typed value to an end; places between lie at whole parts.
-const parts = 64
+// parts is how many there are of the way from the typed value to an end; places between lie at whole parts, and edges beyond which a limit does
+// not count at whole fineParts.
+const (
+	parts     = 64
+	fineParts = 1024
+)
 
 // with is the corner with one spread elsewhere.
 func (c corner) with(i int, at float64) corner {
@@ -75,6 +79,7 @@ type search struct {
 
 // cornerFindings are what was found at a corner: for each limit a finding, and whether it was judged.
 type cornerFindings struct {
+	at       corner
 	findings []rules.Finding
 	judged   []bool
 }
@@ -90,12 +95,12 @@ const everyLimit = -1
 // searching starts the search for a product from the findings at its typed values.
 func (r *runner) searching(p *workbook.Product, typed []rules.Finding, o model.Options) *search {
 	s := &search{r: r, p: p, options: o, solved: map[string]*cornerFindings{}}
-	all := &cornerFindings{typed, make([]bool, len(typed))}
+	all := &cornerFindings{make(corner, len(p.Spreads)), typed, make([]bool, len(typed))}
 	for k := range typed {
 		s.limits = append(s.limits, typed[k].Limit)
 		all.judged[k] = true
 	}
-	s.solved[make(corner, len(p.Spreads)).key()] = all
+	s.solved[all.at.key()] = all
 	return s
 }
 
@@ -172,7 +177,7 @@ func (s *search) need(list []ask) error {
 	for i, c := range order {
 		f := s.solved[c.key()]
 		if f == nil {
-			f = &cornerFindings{make([]rules.Finding, len(s.limits)), make([]bool, len(s.limits))}
+			f = &cornerFindings{c, make([]rules.Finding, len(s.limits)), make([]bool, len(s.limits))}
 			s.solved[c.key()] = f
 		}
 		for j, k := range which[i] {
@@ -399,7 +404,7 @@ const betweenRounds = 3
 // those that inner gives; to the last place at which the limit still counts, where farther on it does not, as where the food no longer gets as
 // warm as its clock starts; and to where the parabola through three places has its worst.
 func (s *search) between(worst []corner) error {
-	looks := []func([]corner) (bool, error){s.halves, s.edges, s.bent, s.bent}
+	looks := []func([]corner) (bool, error){s.halves, s.edges, s.bent, s.bent, s.bent}
 	for range betweenRounds {
 		moved := false
 		for _, look := range looks {
@@ -464,115 +469,201 @@ func (s *search) tryOut(worst []corner, look func(k int, c corner) []corner) (mo
 // stands are the places of a spread, in order, at which a limit was judged with everything else as at a corner.
 func (s *search) stands(k int, c corner, i int) []float64 {
 	var out []float64
-	for n := -parts; n <= parts; n++ {
-		if v := float64(n) / parts; s.knows(c.with(i, v), k) {
+known:
+	for _, f := range s.solved {
+		if !f.judged[k] {
+			continue
+		}
+		for j, v := range f.at {
+			if v != c[j] && j != i {
+				continue known
+			}
+		}
+		out = append(out, f.at[i])
+	}
+	slices.Sort(out)
+	return out
+}
+
+// edge is a part of a spread at the ends of which the course that decides a limit goes otherwise: on one the limit does not apply, say, or the food
+// falls to where the clock starts once more. A margin may leap there.
+type edge struct {
+	ask
+	spread   int
+	lo, hi   float64
+	fineness float64 // parts of the way from the typed value to an end
+}
+
+// sameWay tells whether two findings are of courses that go the same way.
+func sameWay(a, b *rules.Finding) bool {
+	return a.Goes == b.Goes && (a.Verdict == rules.NotApplicable) == (b.Verdict == rules.NotApplicable)
+}
+
+// edges moves the corner of each limit that is met there to places just beside an edge, along each spread and, of few, along those beside it, with
+// another quantity at its ends. Where all that was judged goes the same way, nothing is tried.
+func (s *search) edges(worst []corner) (moved bool, err error) {
+	var lines []edge
+	var list []ask
+	for k, c := range worst {
+		if s.at(c)[k].Verdict != rules.Met || s.allAlike(k) {
+			continue
+		}
+		from := []corner{c}
+		if len(c) <= fullSpreads {
+			from = append(from, s.flips(c)...)
+		}
+		for i := range c {
+			for _, d := range from {
+				if d[i] == c[i] && len(s.ends(i, 0)) > 0 {
+					lines = append(lines, edge{ask: ask{d, k}, spread: i})
+					for _, v := range append(s.ends(i, 0), 0) {
+						list = append(list, ask{d.with(i, v), k})
+					}
+				}
+			}
+		}
+	}
+	if err := s.need(list); err != nil {
+		return false, err
+	}
+	var found []edge
+	for _, e := range lines {
+		at := s.stands(e.limit, e.corner, e.spread)
+		for j := 1; j < len(at); j++ {
+			a, b := &s.at(e.with(e.spread, at[j-1]))[e.limit], &s.at(e.with(e.spread, at[j]))[e.limit]
+			if sameWay(a, b) {
+				continue
+			}
+			e.lo, e.hi, e.fineness = at[j-1], at[j], parts
+			if a.Verdict == rules.NotApplicable || b.Verdict == rules.NotApplicable {
+				e.fineness = fineParts
+			}
+			found = append(found, e)
+		}
+	}
+	if err := s.halve(found); err != nil {
+		return false, err
+	}
+	for _, e := range found {
+		for _, v := range s.stands(e.limit, e.corner, e.spread) { // so close to an edge it often cannot be told, and a little before it is not met
+			c := e.with(e.spread, v)
+			if a, b := &s.at(c)[e.limit], &s.at(worst[e.limit])[e.limit]; rules.Worse(a, b) && apart(a, b) {
+				worst[e.limit], moved = c, true
+			}
+		}
+	}
+	return moved, nil
+}
+
+// allAlike tells whether everything that was judged by a limit goes the same way.
+func (s *search) allAlike(k int) bool {
+	var first *rules.Finding
+	for _, f := range s.solved {
+		switch {
+		case !f.judged[k]:
+		case first == nil:
+			first = &f.findings[k]
+		case !sameWay(first, &f.findings[k]):
+			return false
+		}
+	}
+	return true
+}
+
+// halve brings the ends of edges together.
+func (s *search) halve(found []edge) error {
+	for {
+		var list []ask
+		mids := make([]float64, len(found))
+		for n, e := range found {
+			mids[n] = math.Trunc((e.lo+e.hi)/2*e.fineness) / e.fineness
+			if mids[n] > e.lo && mids[n] < e.hi {
+				list = append(list, ask{e.with(e.spread, mids[n]), e.limit})
+			}
+		}
+		if len(list) == 0 {
+			return nil
+		}
+		if err := s.need(list); err != nil {
+			return err
+		}
+		for n := range found {
+			e := &found[n]
+			at := func(v float64) *rules.Finding { return &s.at(e.with(e.spread, v))[e.limit] }
+			switch {
+			case !(mids[n] > e.lo && mids[n] < e.hi):
+			case sameWay(at(mids[n]), at(e.lo)):
+				e.lo = mids[n]
+			default:
+				e.hi = mids[n]
+			}
+		}
+	}
+}
+
+// bends are places between the ends of each spread at which a limit may be less favourable than at a corner: along each stretch without an edge, where
+// the parabola through the least margin, in time or in temperature, and those beside it has its least; and half way to those beside it, where the least
+// lies between the ends of the stretch, or the margin hardly moves from its end on.
+func (s *search) bends(k int, c corner) []corner {
+	var out []corner
+	for i := range c {
+		at := s.stands(k, c, i)
+		for len(at) > 0 {
+			n := 1
+			for n < len(at) && sameWay(&s.at(c.with(i, at[n-1]))[k], &s.at(c.with(i, at[n]))[k]) {
+				n++
+			}
+			for _, margin := range []func(*rules.Finding) *float64{func(f *rules.Finding) *float64 { return f.MarginS }, func(f *rules.Finding) *float64 { return f.MarginK }} {
+				y, known := make([]float64, n), n > 1
+				for j, v := range at[:n] {
+					m := margin(&s.at(c.with(i, v))[k])
+					if known = known && m != nil; known {
+						y[j] = *m
+					}
+				}
+				if !known {
+					continue
+				}
+				for _, v := range leastOf(at[:n], y) {
+					v = math.Round(v*parts) / parts
+					if d := c.with(i, v); !s.knows(d, k) && v > at[0] && v < at[n-1] {
+						out = append(out, d)
+					}
+				}
+			}
+			at = at[n:]
+		}
+	}
+	return out
+}
+
+// leastOf are places at which what is y at x may be less than that: see bends. x rises.
+func leastOf(x, y []float64) []float64 {
+	var out []float64
+	least, most := slices.Min(y), slices.Max(y)
+	here := slices.Index(y, least)
+	within := here > 0 && here+1 < len(y)
+	for _, n := range []int{here - 1, here + 1} {
+		if n >= 0 && n < len(y) && most > least && (within || y[n]-least < flatPart*(most-least)) {
+			out = append(out, (x[n]+x[here])/2)
+		}
+	}
+	if len(x) < 3 {
+		return out
+	}
+	j := max(1, min(here, len(x)-2))
+	x, y = x[j-1:j+2], y[j-1:j+2]
+	first, second := (y[1]-y[0])/(x[1]-x[0]), (y[2]-y[1])/(x[2]-x[1])
+	if second > first {
+		if v := (x[0]+x[1])/2 - first*(x[2]-x[0])/2/(second-first); v > x[0] && v < x[2] {
 			out = append(out, v)
 		}
 	}
 	return out
 }
 
-// edge is a part of a spread on one end of which a limit counts.
-type edge struct {
-	ask
-	spread  int
-	in, out float64
-}
-
-// edges moves the corner of each limit that is met there to the last places at which it counts.
-func (s *search) edges(worst []corner) (moved bool, err error) {
-	counts := func(a ask, i int, v float64) bool { return s.at(a.with(i, v))[a.limit].Verdict != rules.NotApplicable }
-	var found []edge
-	for k, c := range worst {
-		if s.at(c)[k].Verdict != rules.Met {
-			continue
-		}
-		a := ask{c, k}
-		for i := range c {
-			at := s.stands(k, c, i)
-			for j := 1; j < len(at); j++ {
-				switch u, v := at[j-1], at[j]; {
-				case counts(a, i, u) == counts(a, i, v):
-				case counts(a, i, u):
-					found = append(found, edge{a, i, u, v})
-				default:
-					found = append(found, edge{a, i, v, u})
-				}
-			}
-		}
-	}
-	for open := true; open; {
-		open = false
-		var list []ask
-		mids := make([]float64, len(found))
-		for n, e := range found {
-			mids[n] = math.Trunc((e.in+e.out)/2*parts) / parts
-			if mids[n] != e.in && mids[n] != e.out {
-				list, open = append(list, ask{e.with(e.spread, mids[n]), e.limit}), true
-			}
-		}
-		if err := s.need(list); err != nil {
-			return false, err
-		}
-		for n := range found {
-			switch e := &found[n]; {
-			case mids[n] == e.in || mids[n] == e.out:
-			case counts(e.ask, e.spread, mids[n]):
-				e.in = mids[n]
-			default:
-				e.out = mids[n]
-			}
-		}
-	}
-	for _, e := range found {
-		c := e.with(e.spread, e.in)
-		if a, b := &s.at(c)[e.limit], &s.at(worst[e.limit])[e.limit]; rules.Worse(a, b) && apart(a, b) {
-			worst[e.limit], moved = c, true
-		}
-	}
-	return moved, nil
-}
-
-// bends are the places between the ends of each spread at which the parabola through the margins at a corner and the places beside it has its least.
-func (s *search) bends(k int, c corner) []corner {
-	var out []corner
-	for i := range c {
-		at := s.stands(k, c, i)
-		j := slices.Index(at, c[i])
-		if j = max(1, min(j, len(at)-2)); len(at) < 3 {
-			continue
-		}
-		var y [3]float64
-		x, known := at[j-1:j+2], true
-		for n := range y {
-			m := marginOf(&s.at(c.with(i, x[n]))[k])
-			if known = known && m != nil; known {
-				y[n] = *m
-			}
-		}
-		first, second := (y[1]-y[0])/(x[1]-x[0]), (y[2]-y[1])/(x[2]-x[1])
-		if !known || !(second > first) {
-			continue
-		}
-		least := (x[0]+x[1])/2 - first*(x[2]-x[0])/2/(second-first)
-		least = math.Round(least*parts) / parts
-		if least > x[0] && least < x[2] && !s.knows(c.with(i, least), k) {
-			out = append(out, c.with(i, least))
-		}
-	}
-	return out
-}
-
-// marginOf is the margin of a finding in temperature, K, or, where it has none, in time, s; nil without either.
-func marginOf(f *rules.Finding) *float64 {
-	if f.Verdict == rules.NotApplicable {
-		return nil
-	}
-	if f.MarginK != nil {
-		return f.MarginK
-	}
-	return f.MarginS
-}
+// flatPart is how little of all that a margin moves along a spread it may move from its end on for a place between to be tried there.
+const flatPart = 0.25
 
 // inner are places of a spread between its ends: half way to each, and of temperatures the quarters and those that bring the start just to
 // either side of where a limit begins to count.

@@ -250,6 +250,12 @@ func TestWorstAtAnEdgeAndInABend(t *testing.T) {
 			"cool,,55.8,29.3,40.720446715,crossing,less than", "P,density,5.1 %,0 %,invented", -60, -34},
 		{"P,X,slab,30.8,,F,7.8", "F,0.285,961,3022,-3,invented", "X,s1,cook,16,film,93.5,40.7\nX,s2,hold hot,34,film,62,15.5\nX,s3,cool,207,film,2.3,7.9",
 			"by the end,,,40.783632813,33.2,stage end: hold hot,", "P,specific heat,24.2 %,18.7 %,invented\nX/s3,medium temperature,1.3 °C,2 °C,invented", -60, -40},
+		// a start that is to fall to 52.62 °C before it is warmed again, and was warmer than it then gets: 72 min, and 37 at most elsewhere
+		{"P,X,sphere,,56.8,F,69.5", "F,0.469,1085,3473,-3,invented", "X,s1,rest,23,film,24.1,6.8\nX,s2,hold hot,30,film,67.4,15.2\nX,s3,cool,387,film,2.6,54.3",
+			"cool,,52.62,12.70,60,crossing,", "P,start temperature,28.5 °C,22.3 °C,invented", -29, -22},
+		// the density at which the centre just gets to 59.66 °C is another for another duration: 231 min, and 206 at the duration of the worst end
+		{"P,X,slab,53.9,,F,5.8", "F,0.282,946,2834,-3,invented", "X,s1,cook,51,film,107.4,41.3\nX,s2,cool,332,film,3.8,9.8",
+			"cool,,59.66,16.39,220,crossing,", "P,density,24.6 %,38.9 %,invented\nX/s1,duration,3.9 min,2.4 min,invented", -26, -19},
 	} {
 		dir := t.TempDir()
 		for name, text := range map[string]string{
