@@ -443,9 +443,11 @@ func (r *reader) readSpread() {
 			p.suffer(l.because)
 		}
 	}
+	var found spreadFaults
 	for _, p := range r.products {
-		r.checkSpreads(t, p)
+		found.check(t, p)
 	}
+	found.tell()
 }
 
 // whoLacks names what a quantity is missing in.
@@ -647,8 +649,51 @@ func (r *reader) hangSpread(l *Line, p *product, s Spread, stepKey string) (had 
 	return had
 }
 
-// checkSpreads asks the model what it cannot calculate at each end.
-func (r *reader) checkSpreads(t *table, p *product) {
+// spreadFaults are what cannot be calculated at the ends of the rows of Spread, each told once for all products that it is true of.
+type spreadFaults []*spreadFault
+
+type spreadFault struct {
+	line           *Line
+	heading, typed string
+	saying         saying
+	args           []string // ofProducts stands for their names
+	products       []*product
+}
+
+const ofProducts = "\x00"
+
+// add takes in what is true of a product.
+func (fs *spreadFaults) add(p *product, l *Line, heading, typed string, s saying, args ...string) {
+	for _, f := range *fs {
+		if f.line == l && f.heading == heading && f.typed == typed && f.saying == s && slices.Equal(f.args, args) {
+			f.products = append(f.products, p)
+			return
+		}
+	}
+	*fs = append(*fs, &spreadFault{l, heading, typed, s, args, []*product{p}})
+}
+
+// tell puts them to their lines, and to the products, which cannot be calculated.
+func (fs spreadFaults) tell() {
+	for _, f := range fs {
+		var names []string
+		for _, p := range f.products {
+			names = append(names, p.Name)
+		}
+		for i, a := range f.args {
+			if a == ofProducts {
+				f.args[i] = someOf(names)
+			}
+		}
+		f.line.Fault(f.heading, f.typed, f.saying, f.args...)
+		for _, p := range f.products {
+			p.suffer(f.line.because[len(f.line.because)-1:])
+		}
+	}
+}
+
+// check asks the model what it cannot calculate of a product at each end.
+func (fs *spreadFaults) check(t *table, p *product) {
 	if len(p.because) > 0 || len(p.Spreads) == 0 || p.Shape == nil || len(p.Steps) == 0 {
 		return
 	}
@@ -657,8 +702,7 @@ func (r *reader) checkSpreads(t *table, p *product) {
 	}
 	if len(p.Spreads) > mostSpreads {
 		l := lineOf(&p.Spreads[mostSpreads])
-		l.Fault("Applies to", l.Entry("Applies to").Text, spreadMany, strconv.Itoa(len(p.Spreads)), p.Name, strconv.Itoa(mostSpreads))
-		p.suffer(l.because)
+		fs.add(p, l, "Applies to", l.Entry("Applies to").Text, spreadMany, strconv.Itoa(len(p.Spreads)), ofProducts, strconv.Itoa(mostSpreads))
 		return
 	}
 	before := map[string]bool{}
@@ -682,19 +726,19 @@ func (r *reader) checkSpreads(t *table, p *product) {
 			}
 			if s.Of.positive && end.at < 0 {
 				if v := s.Of.value(&p.Product.Product, step); v-end.d.of(v) <= 0 {
-					l.Fault(end.heading, end.d.Typed, spreadTooFar, s.Named(), p.Name)
+					fs.add(p, l, end.heading, end.d.Typed, spreadTooFar, s.Named(), ofProducts)
 					continue
 				}
 			}
 			if s.Of.Name == "film coefficient" && !end.d.Share && anyExposure(step, worksOut) {
-				l.Fault(end.heading, end.d.Typed, spreadFilm, s.StepName)
+				fs.add(p, l, end.heading, end.d.Typed, spreadFilm, s.StepName)
 				continue
 			}
 			if s.Of.Name == "duration" && anyExposure(step, func(e *model.Exposure) bool {
 				n := len(e.Medium.TimesS)
 				return n > 1 && e.Medium.TimesS[n-1] < step.DurationS+end.at*end.d.of(step.DurationS)-1e-6
 			}) {
-				l.Fault(end.heading, end.d.Typed, spreadCourse, s.StepName)
+				fs.add(p, l, end.heading, end.d.Typed, spreadCourse, s.StepName)
 				continue
 			}
 			at := make([]float64, len(p.Spreads))
@@ -702,11 +746,10 @@ func (r *reader) checkSpreads(t *table, p *product) {
 			q := p.Varied(at)
 			for _, e := range model.Check(q.Product, q.Steps) {
 				if e.Level == cell.Fault && !before[e.Msg] {
-					l.Fault(end.heading, end.d.Typed, spreadEnd, s.Named(), p.Name, strings.TrimPrefix(rounded(e.Typed)+": "+e.Msg, ": "))
+					fs.add(p, l, end.heading, end.d.Typed, spreadEnd, s.Named(), ofProducts, strings.TrimPrefix(rounded(e.Typed)+": "+e.Msg, ": "))
 					break
 				}
 			}
 		}
-		p.suffer(l.because)
 	}
 }

@@ -1,6 +1,9 @@
 package workbook
 
 import (
+	"fmt"
+	"os"
+	"path/filepath"
 	"slices"
 	"testing"
 
@@ -47,5 +50,30 @@ func TestBetween(t *testing.T) {
 	}
 	if p.StartC != 64 || p.Size.ThicknessM != 0.04 {
 		t.Error("the product was moved")
+	}
+}
+
+// TestSpreadOfSomeOnly: what a row of Spread leaves of some products is told once for all of these, and keeps no other from being calculated,
+// wherever it stands.
+func TestSpreadOfSomeOnly(t *testing.T) {
+	for _, thick := range [][]string{{"1", "30", "1.5"}, {"30", "1", "1.5"}, {"1", "1.5", "30"}} {
+		dir := t.TempDir()
+		for name, text := range map[string]string{
+			"Products": fmt.Sprintf("Product,Process,Shape,Thickness (mm),Food,Start temperature (°C)\nA,P,slab,%s,F,5\nB,P,slab,%s,F,5\nC,P,slab,%s,F,5\n", thick[0], thick[1], thick[2]),
+			"Foods":    "Food,Conductivity (W/m·K),Density (kg/m³),Specific heat (J/kg·K),Flows,Source\nF,0.48,1050,3500,no,invented\n",
+			"Steps":    "Process,Step,Stage,Duration (min),Surroundings,Temperature (°C),Film coefficient (W/m²·K)\nP,s,cook,60,film,90,30\n",
+			"Spread":   "Applies to,Quantity,Minus,Plus,Basis\nall,thickness,2 mm,2 mm,invented\n",
+		} {
+			if err := os.WriteFile(filepath.Join(dir, name+".csv"), []byte(text), 0o644); err != nil {
+				t.Fatal(err)
+			}
+		}
+		plan, err := Read(dir)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if plan.Problems.Faults() != 1 || len(plan.Products) != 1 || plan.Products[0].Size.ThicknessM != 0.03 {
+			t.Errorf("%v: %d products\n%v", thick, len(plan.Products), plan.Problems)
+		}
 	}
 }
