@@ -147,7 +147,7 @@ func TestSizesPDF(t *testing.T) {
 	at := func(v, margin float64, verdict rules.Verdict) *SizePoint {
 		return &SizePoint{Value: v, Words: plain(v, 0, nearest) + " mm", Meets: verdict == rules.Met, Findings: []rules.Finding{{Limit: l, Level: "must", Verdict: verdict, MarginK: &margin}}}
 	}
-	s := &Sizing{Product: "Stew", What: "thickness", Unit: "mm", Most: true, Step: "1 mm", Spacing: "10 mm",
+	s := &Sizing{Product: "Stew", What: "thickness", Unit: "mm", Most: true, Step: "1 mm", Spacing: "10 mm", Stride: "30 mm",
 		Curve: []*SizePoint{at(20, 5, rules.Met), at(30, 1, rules.Met), at(40, -3, rules.NotMet), {Value: 50, Words: "50 mm", Refused: "too thick"}}}
 	s.Now = s.Curve[2]
 	s.Conclude()

@@ -29,7 +29,7 @@ type Sizing struct {
 	Unit                   string // of the values: mm, min or °C
 	Most                   bool   // the largest value that meets was asked for, not the smallest
 	Basis                  string // what was judged, in a sentence
-	Step, Spacing          string // the resolution, and how far apart the values of the first look lie, in the user's own unit
+	Step, Spacing, Stride  string // the resolution, and how far apart the values of the first look lie where a limit comes near and elsewhere, in the user's own unit
 	Now                    *SizePoint
 	Curve                  []*SizePoint    // rising
 	Meets                  [][2]*SizePoint // the runs of neighbouring values that meet: first and last
@@ -238,7 +238,7 @@ func (s *Sizing) sentences(h *Head) []string {
 			out = append(out, say("size several"))
 		}
 	}
-	out = append(out, say("size looked", s.Curve[0].Words, s.Curve[len(s.Curve)-1].Words, s.Spacing, s.Step))
+	out = append(out, say("size looked", s.Curve[0].Words, s.Curve[len(s.Curve)-1].Words, s.Stride, s.Spacing, s.Step))
 	for _, l := range s.limits() {
 		if l.Effect != "depends" {
 			out = append(out, l.words)

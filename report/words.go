@@ -648,7 +648,7 @@ var words = map[string]string{
 	"size run":          "%s to %s",
 	"size meets":        "Meets: %s.",
 	"size several":      "Between these runs the limits are not met: do not read the answer as \"up to\" or \"from\".",
-	"size looked":       "Searched from %s to %s: at first every %s, closer where a margin turns round, and by %s where the verdict changes. A narrower run between could go unseen.",
+	"size looked":       "Searched from %s to %s: at first every %s, every %s where a limit comes near or food goes through its temperatures otherwise, closer where a margin turns round, and by %s where the verdict changes. A narrower run between could go unseen.",
 	"size no effect":    "\"%s\" does not depend on the %s: %s.",
 	"size throughout":   "\"%s\" is met throughout the range.",
 	"size nowhere":      "\"%s\" is met nowhere in the range.",

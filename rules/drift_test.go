@@ -67,6 +67,7 @@ func TestDrift(t *testing.T) {
 	met := Limit{Name: "L", Kind: StayAbove, FromC: c(30), Stages: st(model.Rest), Applies: all}
 	with := Judge([]Limit{met}, nil, Subject{Product: "P", History: slow, Drift: func(model.Drift) ([]Run, error) { return []Run{{History: fast}}, nil }}).Findings[0]
 	own := Judge([]Limit{met}, nil, Subject{Product: "P", History: fast}).Findings[0]
+	faster := *with.MarginK
 	if *with.MarginK != *own.MarginK {
 		t.Errorf("room %g K, want that of the faster run, %g K", *with.MarginK, *own.MarginK)
 	}
@@ -87,6 +88,16 @@ func TestDrift(t *testing.T) {
 	}
 	if n := len(slices.DeleteFunc(slices.Clone(with.Notes), func(n string) bool { return !strings.Contains(n, "counts what the plan leaves blank") })); n != 1 {
 		t.Errorf("the lesser room is told %d times: %q", n, with.Notes)
+	}
+
+	// What is enough without the other runs does not ask for them.
+	for _, enough := range []bool{true, false} {
+		asked := false
+		f := Judge([]Limit{met}, nil, Subject{Product: "P", History: slow, Enough: func(fs []Finding) bool { return enough && len(fs) == 1 && fs[0].Verdict == Met },
+			Drift: func(model.Drift) ([]Run, error) { asked = true; return []Run{{History: fast}}, nil }}).Findings[0]
+		if asked == enough || enough == (*f.MarginK == faster) {
+			t.Errorf("enough %v: asked %v, room %g K", enough, asked, *f.MarginK)
+		}
 	}
 
 	// Where the other runs cannot be calculated, neither a limit that is met nor one that does not apply is left so.

@@ -29,7 +29,6 @@ func Conclude(findings []Finding, groups []Group) Judgement {
 func Find(limits []Limit, s Subject) []Finding {
 	var out []Finding
 	usual := newCourses(s.History)
-	drifts := map[model.Drift]drift{}
 	further := make([]*courses, len(s.Further))
 	for i := range s.Further {
 		further[i] = newCourses(s.Further[i].History)
@@ -51,28 +50,39 @@ func Find(limits []Limit, s Subject) []Finding {
 				f.carriedOver(g.CarryOver)
 			}
 		}
-		for _, side := range l.sides() {
-			if f.Verdict != Met && f.Verdict != NotApplicable || s.Drift == nil || !l.takes(side, s.History) {
-				continue
-			}
-			d, asked := drifts[side]
-			if !asked {
-				d = s.drift(side)
-				drifts[side] = d
-			}
-			for _, c := range d.runs {
-				if f.Verdict != CannotTell {
-					g := judgeOne(l, c)
-					f.drifted(&g)
-				}
-			}
-			if d.err != nil && f.Verdict != CannotTell {
-				f.open(say("drift unsolved", holes{"met": strings.TrimSuffix(f.Why, "."), "why": strings.TrimSuffix(d.err.Error(), ".")}))
-			}
-		}
 		out = append(out, f)
 	}
+	if s.Drift == nil || s.Enough != nil && s.Enough(out) {
+		return out
+	}
+	drifts := map[model.Drift]drift{}
+	for i := range out {
+		s.weighDrift(&out[i], drifts)
+	}
 	return out
+}
+
+// weighDrift weighs a finding against the runs of the sides that its limit would not have, which are made once they are asked for.
+func (s *Subject) weighDrift(f *Finding, drifts map[model.Drift]drift) {
+	for _, side := range f.Limit.sides() {
+		if f.Verdict != Met && f.Verdict != NotApplicable || !f.Limit.takes(side, s.History) {
+			continue
+		}
+		d, asked := drifts[side]
+		if !asked {
+			d = s.drift(side)
+			drifts[side] = d
+		}
+		for _, c := range d.runs {
+			if f.Verdict != CannotTell {
+				g := judgeOne(f.Limit, c)
+				f.drifted(&g)
+			}
+		}
+		if d.err != nil && f.Verdict != CannotTell {
+			f.open(say("drift unsolved", holes{"met": strings.TrimSuffix(f.Why, "."), "why": strings.TrimSuffix(d.err.Error(), ".")}))
+		}
+	}
 }
 
 // drift holds the runs of steps taken to a side, or why they cannot be calculated.

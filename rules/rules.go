@@ -193,6 +193,7 @@ type Subject struct {
 	History *model.History
 	Further []Run
 	Drift   func(model.Drift) ([]Run, error) // the runs of its steps taken to a side (model.Drifted), asked for only where a limit needs them; nil, or of none: none
+	Enough  func([]Finding) bool             // tells whether findings are enough without those; nil: they never are
 }
 
 // Judgement is everything that the limits say of a product.

@@ -44,8 +44,11 @@ func (d *prediction) runOf(name string) *model.History {
 }
 
 // find judges limits, before groups join them.
-func (d *prediction) find(limits []rules.Limit) []rules.Finding {
-	return rules.Find(limits, rules.Subject{Product: d.product.Name, Family: d.product.Family, History: d.history, Further: d.further, Drift: d.drift})
+func (d *prediction) find(limits []rules.Limit) []rules.Finding { return d.findEnough(limits, nil) }
+
+// findEnough does so, and looks at what the plan leaves open only where the findings are not enough without; nil: always.
+func (d *prediction) findEnough(limits []rules.Limit, enough func([]rules.Finding) bool) []rules.Finding {
+	return rules.Find(limits, rules.Subject{Product: d.product.Name, Family: d.product.Family, History: d.history, Further: d.further, Drift: d.drift, Enough: enough})
 }
 
 // judged predicts and judges one product, at the unfavourable ends of what varies.

@@ -13,19 +13,25 @@ import (
 	"slowpoint/rules"
 )
 
-// sizeGrid is how many intervals a range is cut into before the verdict's changes are narrowed down; sizeTurns how often an interval
-// beside a turn of a margin is halved to see whether it changes sides there.
+// sizeGrid is how many intervals a range is cut into before the verdict's changes are narrowed down, sizeStride how many of them are taken at once
+// where nothing comes near between; sizeTurns how often an interval beside a turn of a margin is halved to see whether it changes sides there.
 const (
-	sizeGrid  = 24
-	sizeTurns = 4
+	sizeGrid   = 24
+	sizeStride = 3
+	sizeTurns  = 4
 )
 
 // judgement gives the findings on a product with its steps; a search knows nothing else of how they come about.
 type judgement func(p *workbook.Product) ([]rules.Finding, error)
 
 // judges are the ways to judge a value in a search: look at what is known, exactly does so without first looks at what has to be marched (nil:
-// look takes none), confirm searches on from there until nothing is worse (nil: look does). afresh does so from nothing, as check does.
-type judges struct{ look, exactly, confirm, afresh judgement }
+// look takes none), confirm searches on from there until nothing is worse (nil: look does). afresh does so from nothing, as check does. without
+// are the same ways without some limits; fully those that leave nothing out where a limit is missed (nil: these do not).
+type judges struct {
+	look, exactly, confirm, afresh judgement
+	without                        func([]*rules.Limit) judges
+	fully                          func() judges
+}
 
 // sure is the way that searches on.
 func (j judges) sure() judgement {
@@ -39,7 +45,18 @@ func (j judges) sure() judgement {
 func (r *runner) judges(p *workbook.Product) judges {
 	if len(p.Spreads) > 0 {
 		g := &guide{r: r}
-		return judges{look: g.look, exactly: g.exactly, confirm: g.confirm, afresh: g.afresh}
+		j := judges{look: g.look, exactly: g.exactly, confirm: g.confirm, afresh: g.afresh}
+		j.without = j.less
+		return j
+	}
+	return r.asTyped(nil, false)
+}
+
+// asTyped are the ways to judge a product at the values of the plan by all limits but some. Where one is missed, what the plan leaves open is only
+// looked at if all of it is wanted: it makes none better.
+func (r *runner) asTyped(fixed []*rules.Limit, all bool) judges {
+	misses := func(fs []rules.Finding) bool {
+		return !all && !meetsEvery(but(rules.Conclude(slices.Clone(fs), r.plan.Groups).Findings, fixed))
 	}
 	var marches atomic.Bool
 	judge := func(p *workbook.Product, o model.Options) ([]rules.Finding, error) {
@@ -48,7 +65,7 @@ func (r *runner) judges(p *workbook.Product) judges {
 			return nil, r.located(p, err)
 		}
 		marches.Store(marched(run.history))
-		return rules.Conclude(run.find(r.plan.Limits), r.plan.Groups).Findings, nil
+		return but(rules.Conclude(run.findEnough(r.plan.Limits, misses), r.plan.Groups).Findings, fixed), nil
 	}
 	var sure sync.Map // by product: what is sure is judged once
 	exactly := func(p *workbook.Product) ([]rules.Finding, error) {
@@ -61,25 +78,35 @@ func (r *runner) judges(p *workbook.Product) judges {
 		}
 		return found, err
 	}
-	return judges{exactly: exactly, confirm: exactly, look: func(p *workbook.Product) ([]rules.Finding, error) {
+	look := func(p *workbook.Product) ([]rules.Finding, error) {
 		if marches.Load() {
 			if found, err := judge(p, model.Options{Rough: true}); err == nil && plain(found) {
 				return found, nil
 			}
 		}
 		return exactly(p)
-	}}
+	}
+	j := judges{exactly: exactly, confirm: exactly, look: look, without: func(fixed []*rules.Limit) judges { return r.asTyped(fixed, all) }}
+	if !all {
+		j.fully = func() judges { return r.asTyped(fixed, true) }
+	}
+	return j
 }
 
-// without is the same ways without some limits.
-func (j judges) without(fixed []*rules.Limit) judges {
+// but drops the findings on some limits.
+func but(fs []rules.Finding, fixed []*rules.Limit) []rules.Finding {
+	return slices.DeleteFunc(fs, func(f rules.Finding) bool { return slices.Contains(fixed, f.Limit) })
+}
+
+// less is the same ways, with the findings on some limits left out.
+func (j judges) less(fixed []*rules.Limit) judges {
 	less := func(judge judgement) judgement {
 		if judge == nil {
 			return nil
 		}
 		return func(p *workbook.Product) ([]rules.Finding, error) {
 			fs, err := judge(p)
-			return slices.DeleteFunc(fs, func(f rules.Finding) bool { return slices.Contains(fixed, f.Limit) }), err
+			return but(fs, fixed), err
 		}
 	}
 	return judges{look: less(j.look), exactly: less(j.exactly), confirm: less(j.confirm), afresh: less(j.afresh)}
@@ -270,16 +297,52 @@ func (s *scan) confirm() bool {
 	return holds
 }
 
+// near tells whether a limit may change sides between two values: where its margin is no farther from nought than it moves, where it is missed at one,
+// or where the course that decides it goes otherwise. Where another is missed by far at both, nothing meets between.
+func (e *examined) near(o *examined) bool {
+	if e.err != nil || o.err != nil || e.meets != o.meets || len(e.findings) != len(o.findings) {
+		return true
+	}
+	close := false
+	for i := range e.findings {
+		f, g := &e.findings[i], &o.findings[i]
+		far := f.Verdict == g.Verdict && f.Goes == g.Goes && farFromNought(f.MarginK, g.MarginK) && farFromNought(f.MarginS, g.MarginS)
+		if far && missed(f) && (f.MarginK != nil || f.MarginS != nil) {
+			return false
+		}
+		close = close || !far
+	}
+	return close
+}
+
+// farFromNought tells whether two margins, if there are any, lie on one side of nought and farther from it than from one another.
+func farFromNought(a, b *float64) bool {
+	if a == nil || b == nil {
+		return a == nil && b == nil
+	}
+	return *a**b > 0 && min(math.Abs(*a), math.Abs(*b)) > math.Abs(*a-*b)
+}
+
 // look scans the range on a grid, looks closer where a margin turns round near its limit, and narrows every change of the verdict down to two
 // neighbouring steps: a margin need not go one way. What was confirmed before stays.
 func (s *scan) look() {
 	s.forget()
 	s.spacing = max(1, (s.d.hi-s.d.lo+sizeGrid-1)/sizeGrid)
-	var grid []int
-	for k := s.d.lo; k < s.d.hi; k += s.spacing {
+	grid := []int{s.d.lo}
+	for k := s.d.lo; k < s.d.hi; {
+		k = min(k+sizeStride*s.spacing, s.d.hi)
 		grid = append(grid, k)
 	}
-	s.all(append(grid, s.d.hi))
+	s.all(grid)
+	var between []int
+	for i := 1; i < len(grid); i++ {
+		if a, b := grid[i-1], grid[i]; s.seen[a].near(s.seen[b]) {
+			for k := a + s.spacing; k < b; k += s.spacing {
+				between = append(between, k)
+			}
+		}
+	}
+	s.all(between)
 	for range sizeTurns {
 		if more := s.turns(); len(more) > 0 {
 			s.all(more)
@@ -316,6 +379,11 @@ func (s *scan) steps() []int {
 	}
 	slices.Sort(ks)
 	return ks
+}
+
+// meets tells whether any value does.
+func (s *scan) meets() bool {
+	return slices.ContainsFunc(s.steps(), func(k int) bool { return s.seen[k].meets })
 }
 
 // turns are the steps half way to the neighbours of one at which a margin, in K or in s, turns round on one side of nought and might reach
@@ -392,15 +460,21 @@ func (r *runner) size(p *workbook.Product, d *dial, j judges, basis string, work
 		s.begin()
 	}
 	s.run()
+	if j.fully != nil && !s.meets() { // a limit that nothing changes shows only where all is looked at
+		j = j.fully()
+		s = &scan{p: p, d: d, judges: j, workers: workers, now: now, products: s.products}
+		s.run()
+	}
 	fixed := s.fixed()
 	if len(fixed) > 0 {
 		all := s
 		s = &scan{p: p, d: d, workers: workers, judges: j.without(fixed), products: all.products}
-		if s.run(); len(s.fixed()) > 0 || !slices.ContainsFunc(s.steps(), func(k int) bool { return s.seen[k].meets }) {
+		if s.run(); len(s.fixed()) > 0 || !s.meets() {
 			s, fixed = all, nil
 		}
 	}
-	out := &report.Sizing{Product: p.Name, Process: p.Process, What: d.what, Most: d.most, Basis: basis, Step: d.stepWords(r, p, 1), Spacing: d.stepWords(r, p, s.spacing)}
+	out := &report.Sizing{Product: p.Name, Process: p.Process, What: d.what, Most: d.most, Basis: basis, Step: d.stepWords(r, p, 1), Spacing: d.stepWords(r, p, s.spacing),
+		Stride: d.stepWords(r, p, sizeStride*s.spacing)}
 	for _, l := range fixed {
 		out.Fixed = append(out.Fixed, l.Name)
 	}
