@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"slowpoint/model/cell"
 )
@@ -10,6 +11,52 @@ import (
 // boilsK is by how much the coldest place of a food may pass the boiling point of water, K: dissolved salt and sugar raise it by a few
 // (common practice, no source). Beyond it the water inside boils off, which conduction does not describe.
 const boilsK = 5
+
+// WhileItBoils gives a history with every temperature, °C, no higher than food gets that holds water and boils it off, and nil where none is higher, or
+// a food holds none. It is for limits that ask for heat.
+func (h *History) WhileItBoils() *History {
+	if h.Recorded || h.Product == nil || slices.ContainsFunc(h.Product.Foods(), func(f *Material) bool { return f.Waterless }) {
+		return nil
+	}
+	most := func(t float64) float64 { return BoilsAtMostC(h.Spans[spanAt(h.Spans, t)].Step.AltitudeM) }
+	scan := h.Scan()
+	mosts := make([]float64, len(scan.TimesS))
+	for k, t := range scan.TimesS {
+		mosts[k] = most(t)
+	}
+	passes := func(row []float64) bool {
+		for k, c := range row {
+			if c > mosts[k] {
+				return true
+			}
+		}
+		return false
+	}
+	if !slices.ContainsFunc(scan.C, passes) {
+		return nil
+	}
+	capped := &Scan{TimesS: scan.TimesS, Spots: scan.Spots}
+	for _, row := range scan.C {
+		row = slices.Clone(row)
+		for k := range row {
+			row[k] = min(row[k], mosts[k])
+		}
+		capped.C = append(capped.C, row)
+	}
+	g := *h
+	g.scan = capped
+	g.Course = func(p Place, times, out []float64) {
+		h.Course(p, times, out)
+		for i, t := range times {
+			out[i] = min(out[i], most(t))
+		}
+	}
+	g.At = func(p Place, t float64) float64 { return min(h.At(p, t), most(t)) }
+	return &g
+}
+
+// BoilsAtMostC is how hot food that holds water gets at most, °C, at an altitude, m.
+func BoilsAtMostC(altitudeM float64) float64 { return boilingC(altitudeM) + boilsK }
 
 // boiling warns of a food that would be hotter than boiling water throughout. It looks at the ends of the steps, since the coldest place
 // warms all the time in surroundings that stay as they are, and between them where the surroundings change.
@@ -21,7 +68,7 @@ func (s *solver) boiling(h *History) {
 	}
 	for i := range h.Spans {
 		sp := &h.Spans[i]
-		limit := boilingC(sp.Step.AltitudeM) + boilsK
+		limit := BoilsAtMostC(sp.Step.AltitudeM)
 		if h.hull[i][1] <= limit {
 			continue
 		}

@@ -207,7 +207,8 @@ func (v *view) coolOpen(o outcome, q path, w window, t tilt) outcome {
 		o.holes = holes{"value": lasting(ran, up), "start": l.startWords(), "stage": v.stageNames(), "still": still}
 	}
 	switch {
-	case !l.within(ran, *l.TimeS):
+	case !l.within(ran, *l.TimeS): // by how much is not known before it is down
+		o.margin = math.NaN()
 	case w.b > w.stageTo+sameS:
 		o.word, o.margin = "cool stage", math.Min(o.margin, w.stageTo-w.b)
 		v.afterStage(&o, q, w, w.b, 1, t)

@@ -27,6 +27,11 @@ func (l *Limit) sides() []model.Drift {
 	return nil
 }
 
+// wantsHeat tells whether a limit asks for heat: colder food is less favourable.
+func (l *Limit) wantsHeat() bool {
+	return l.Kind != Duration && l.Kind != Delay && slices.Contains(l.sides(), model.Colder)
+}
+
 // takes tells whether a side takes a step that begins before the last one that a limit is about has ended: what comes later says nothing of it.
 func (l *Limit) takes(side model.Drift, h *model.History) bool {
 	var steps []model.Step

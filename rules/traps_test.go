@@ -74,6 +74,9 @@ func TestTraps(t *testing.T) {
 			if !math.IsNaN(x.value) {
 				closeTo(t, "value", got.Value, x.value, 1e-6)
 			}
+			if x.l.Kind == CoolWithin && x.verdict == NotMet && (got.MarginS == nil) != math.IsNaN(x.end) { // what is lacking is not known before it is down
+				t.Errorf("lacking %v s", got.MarginS)
+			}
 			for what, pair := range map[string]struct {
 				got  *float64
 				want float64

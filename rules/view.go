@@ -26,6 +26,9 @@ type courses struct {
 	whole *path   // the one course that there is, of a recording; nil elsewhere
 	airK  float64 // how far the recorded medium may be off, K
 
+	boils     *courses // the same, no hotter than food gets that holds water; nil: it is not
+	boilAsked bool
+
 	roughT []float64 // for ranking many spots: fewer instants, and the spots' temperatures there
 	rough  [][]float64
 }

@@ -1,0 +1,58 @@
+package rules
+
+import (
+	"strings"
+	"testing"
+
+	"slowpoint/model"
+)
+
+// TestHotterThanBoiling: what a limit on heat counts of food that holds water ends five kelvin above the boiling point of water: a limit that only hotter food
+// meets cannot be told, and one that is met all the same has the room that is left. Food without water, and limits on cold, are judged as calculated.
+func TestHotterThanBoiling(t *testing.T) {
+	film, plateau := 60.0, 5.0
+	solve := func(dry bool, altitudeM float64) *model.History {
+		h, err := model.Solve(model.Product{Name: "P", Shape: model.Slab, Size: model.Size{ThicknessM: 0.02}, StartC: 8,
+			Food: &model.Material{Name: "block", Source: "invented", Waterless: dry, Flow: model.FlowsNo,
+				Props: func(float64) model.Properties { return model.Properties{KWmK: 0.5, RhoKgM3: 1050, CJkgK: 3600} }}},
+			[]model.Step{{Name: "oven", Stage: model.Cook, DurationS: 3600, AltitudeM: altitudeM,
+				Exposure: model.Exposure{Surface: model.Film, FilmW: &film, Medium: model.Course{TimesS: []float64{0}, C: []float64{190}}}}}, model.Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		return h
+	}
+	all := Applies{All: true}
+	sterile := Limit{Name: "L", Kind: Lethality, ReferenceC: c(121.1), ZK: c(10), TimeS: min_(3), Applies: all, Stages: st(model.Cook)}
+	warm := Limit{Name: "L", Kind: Hold, FromC: c(75), TimeS: c(0), Counting: Total, Applies: all, Stages: st(model.Cook)}
+	cold := Limit{Name: "L", Kind: StayBelow, ToC: c(400), Applies: all, Stages: st(model.Cook)}
+	for _, x := range []struct {
+		name      string
+		limit     Limit
+		dry       bool
+		altitudeM float64
+		verdict   Verdict
+		says      string // of the finding and its notes; "" nothing of boiling
+	}{
+		{"lethality by hotter food", sterile, false, 0, CannotTell, "hotter than 105 °C"},
+		{"without water", sterile, true, 0, Met, ""},
+		{"met below it too", warm, false, 0, Met, "Temperatures above 105 °C"},
+		{"in the mountains", warm, false, 2000, Met, "Temperatures above 98."},
+		{"a limit on cold", cold, false, 0, Met, ""},
+	} {
+		f := Find([]Limit{x.limit}, Subject{Product: "P", History: solve(x.dry, x.altitudeM)})[0]
+		told := f.Why + strings.Join(f.Notes, " ")
+		if f.Verdict != x.verdict || !strings.Contains(told, x.says) || (x.says == "") == strings.Contains(told, "boils off") {
+			t.Errorf("%s: %v, %s", x.name, f.Verdict, told)
+		}
+	}
+	h := solve(false, 0)
+	most := h.At(model.Place{UpM: 0.01}, 3600)
+	f := Find([]Limit{warm}, Subject{Product: "P", History: h})[0]
+	if least := model.BoilsAtMostC(0) - 75; most < 150 || *f.MarginK > least+1e-9 || *f.MarginK < least-h.ErrorK-0.01 {
+		t.Errorf("room %g K, want %g: the centre is at %g °C", *f.MarginK, least, most)
+	}
+	if got := model.BoilsAtMostC(0); got < 100+plateau-0.1 || got > 100+plateau {
+		t.Errorf("%g °C at the sea", got)
+	}
+}
