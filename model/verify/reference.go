@@ -55,7 +55,7 @@ func References() []ReferenceProblem {
 		{ID: "C", AllowK: 0.01, EdgeK: 0.01, Points: map[string]model.Place{"centre": {}, "side_mid": {AcrossM: 0.05}, "end_centre": {UpM: 0.06}, "edge": {UpM: 0.06, AcrossM: 0.05},
 			"half_half": {UpM: 0.03, AcrossM: 0.025}},
 			Problem: Problem{"short cylinder 100 × 120 mm", model.Product{Name: "cylinder", Shape: model.ShortCylinder, Size: model.Size{DiameterM: 0.1, LengthM: 0.12}, Food: material(p), StartC: 5}, chain}},
-		{ID: "D", AllowK: 0.02, EdgeK: 0.03, Points: map[string]model.Place{"centre": {}, "face_x": {AlongM: 0.15}, "face_y": {AcrossM: 0.09}, "face_z": {UpM: 0.045},
+		{ID: "D", AllowK: 0.02, EdgeK: 0.02, Points: map[string]model.Place{"centre": {}, "face_x": {AlongM: 0.15}, "face_y": {AcrossM: 0.09}, "face_z": {UpM: 0.045},
 			"corner": {UpM: 0.045, AcrossM: 0.09, AlongM: 0.15}, "half": {UpM: 0.0225, AcrossM: 0.045, AlongM: 0.075}},
 			Problem: Problem{"brick 300 × 180 × 90 mm of changing properties, cook, rest, chill", model.Product{Name: "brick", Shape: model.Brick,
 				Size: model.Size{LengthM: 0.3, WidthM: 0.18, ThicknessM: 0.09}, Food: changing(), StartC: 5}, chain}},
