@@ -18,7 +18,7 @@ func (h *History) WhileItBoils() *History {
 	if h.Recorded || h.Product == nil || slices.ContainsFunc(h.Product.Foods(), func(f *Material) bool { return f.Waterless }) {
 		return nil
 	}
-	most := func(t float64) float64 { return BoilsAtMostC(h.Spans[spanAt(h.Spans, t)].Step.AltitudeM) }
+	most := boilsAtMost(h.Spans)
 	scan := h.Scan()
 	mosts := make([]float64, len(scan.TimesS))
 	for k, t := range scan.TimesS {
@@ -53,6 +53,19 @@ func (h *History) WhileItBoils() *History {
 	}
 	g.At = func(p Place, t float64) float64 { return min(h.At(p, t), most(t)) }
 	return &g
+}
+
+// boilsAtMost is BoilsAtMostC over the steps, which mostly are at one altitude.
+func boilsAtMost(spans []Span) func(t float64) float64 {
+	inStep := make([]float64, len(spans))
+	for i := range spans {
+		if i > 0 && spans[i].Step.AltitudeM == spans[i-1].Step.AltitudeM {
+			inStep[i] = inStep[i-1]
+		} else {
+			inStep[i] = BoilsAtMostC(spans[i].Step.AltitudeM)
+		}
+	}
+	return func(t float64) float64 { return inStep[spanAt(spans, t)] }
 }
 
 // BoilsAtMostC is how hot food that holds water gets at most, °C, at an altitude, m.

@@ -56,3 +56,47 @@ func TestHotterThanBoiling(t *testing.T) {
 		t.Errorf("%g °C at the sea", got)
 	}
 }
+
+// TestCountsBelow: where a limit is not judged again by what boiling leaves, judging it again says the same.
+func TestCountsBelow(t *testing.T) {
+	all, spared := Applies{All: true}, 0
+	for i, film := range []float64{20, 60} {
+		for _, thicknessM := range []float64{0.01, 0.03, 0.06} {
+			for _, oven := range []float64{110, 160, 260} {
+				h, err := model.Solve(model.Product{Name: "P", Shape: model.Slab, Size: model.Size{ThicknessM: thicknessM}, StartC: 8,
+					Food: &model.Material{Name: "block", Source: "invented", Flow: model.FlowsNo,
+						Props: func(float64) model.Properties { return model.Properties{KWmK: 0.5, RhoKgM3: 1050, CJkgK: 3600} }}},
+					[]model.Step{{Name: "oven", Stage: model.Cook, DurationS: 2400, AltitudeM: 1500 * float64(i),
+						Exposure: model.Exposure{Surface: model.Film, FilmW: &film, Medium: model.Course{TimesS: []float64{0}, C: []float64{oven}}}}}, model.Options{})
+				if err != nil {
+					t.Fatal(err)
+				}
+				boils := h.WhileItBoils()
+				if boils == nil {
+					continue
+				}
+				for _, l := range []Limit{
+					{Name: "hold", Kind: Hold, FromC: c(75), TimeS: c(120), Counting: Continuous},
+					{Name: "hot", Kind: Hold, FromC: c(98), TimeS: c(0), Counting: Total},
+					{Name: "table", Kind: HoldTable, Table: celsiusRows(60, 45, 70, 2, 80, 0.1), Counting: Continuous},
+					{Name: "above", Kind: StayAbove, FromC: c(5)},
+					{Name: "end", Kind: ByTheEnd, FromC: c(60), TimeS: c(2400), Clock: Clock{AtC: c(20)}},
+					{Name: "lethality", Kind: Lethality, ReferenceC: c(70), ZK: c(7.5), TimeS: min_(2)},
+				} {
+					l.Applies, l.Stages = all, st(model.Cook)
+					f := judgeOne(&l, newCourses(h))
+					if f.Verdict != Met || !l.countsBelow(&f, h) {
+						continue
+					}
+					spared++
+					if g := judgeOne(&l, newCourses(boils)); !f.Same(&g) {
+						t.Errorf("%s, %g °C on %g mm: %v, %g K, counted to boiling %v, %g K", l.Name, oven, 1000*thicknessM, f.Verdict, *f.MarginK, g.Verdict, *g.MarginK)
+					}
+				}
+			}
+		}
+	}
+	if spared < 10 {
+		t.Errorf("only %d findings were spared", spared)
+	}
+}

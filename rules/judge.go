@@ -145,32 +145,6 @@ func (a Applies) to(s Subject) bool {
 	return a.Family != "" && same(a.Family, s.Family)
 }
 
-// judgeHot judges a limit by a history, and where it asks for heat and is met, by no more of that than food gets which holds water.
-func judgeHot(l *Limit, c *courses) Finding {
-	f := judgeOne(l, c)
-	if f.Verdict != Met || !l.wantsHeat() {
-		return f
-	}
-	if !c.boilAsked {
-		c.boilAsked = true
-		if h := c.h.WhileItBoils(); h != nil {
-			c.boils = newCourses(h)
-		}
-	}
-	if c.boils == nil {
-		return f
-	}
-	g, most := judgeOne(l, c.boils), l.degrees(model.BoilsAtMostC(c.h.Spans[0].Step.AltitudeM), 1)
-	if g.Verdict == Met {
-		if !f.Same(&g) {
-			g.noteOnce(say("note boils", holes{"most": most}))
-		}
-		return g
-	}
-	f.open(say("boils", holes{"met": strings.TrimSuffix(f.Why, "."), "most": most, "less": strings.TrimSuffix(g.Why, ".")}))
-	return f
-}
-
 // judgeOne judges one limit on one history.
 func judgeOne(l *Limit, c *courses) Finding {
 	v := newView(l, c)
