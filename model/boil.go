@@ -15,7 +15,7 @@ const boilsK = 5
 // WhileItBoils gives a history with every temperature, °C, no higher than food gets that holds water and boils it off, and nil where none is higher, or
 // a food holds none. It is for limits that ask for heat.
 func (h *History) WhileItBoils() *History {
-	if h.Recorded || h.Product == nil || slices.ContainsFunc(h.Product.Foods(), func(f *Material) bool { return f.Waterless }) {
+	if !h.mayBoil() {
 		return nil
 	}
 	most := boilsAtMost(h.Spans)
@@ -53,6 +53,24 @@ func (h *History) WhileItBoils() *History {
 	}
 	g.At = func(p Place, t float64) float64 { return min(h.At(p, t), most(t)) }
 	return &g
+}
+
+// mayBoil tells whether a history is a calculated one of foods that all hold water.
+func (h *History) mayBoil() bool {
+	return !h.Recorded && h.Product != nil && !slices.ContainsFunc(h.Product.Foods(), func(f *Material) bool { return f.Waterless })
+}
+
+// BoilsAtMostC is the temperature, °C, below which WhileItBoils leaves every temperature as it is: BoilsAtMostC at the highest altitude of the steps,
+// and without end where the history counts as it stands.
+func (h *History) BoilsAtMostC() float64 {
+	if !h.mayBoil() {
+		return math.Inf(1)
+	}
+	highestM := math.Inf(-1)
+	for i := range h.Spans {
+		highestM = max(highestM, h.Spans[i].Step.AltitudeM)
+	}
+	return BoilsAtMostC(highestM)
 }
 
 // boilsAtMost is BoilsAtMostC over the steps, which mostly are at one altitude.

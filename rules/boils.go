@@ -43,7 +43,7 @@ func (l *Limit) countsBelow(f *Finding, h *model.History) bool {
 		return false
 	}
 	asked := math.Inf(-1)
-	for _, c := range []*float64{l.FromC, l.ToC} {
+	for _, c := range []*float64{l.FromC, l.ToC, l.Clock.AtC} {
 		if c != nil {
 			asked = max(asked, *c)
 		}
@@ -56,16 +56,5 @@ func (l *Limit) countsBelow(f *Finding, h *model.History) bool {
 	if l.AllowanceK != nil {
 		asked += math.Abs(*l.AllowanceK)
 	}
-	return asked+max(*f.MarginK, 0)+2*h.ErrorK+belowK < boilsAtMostC(h)
-}
-
-// boilsAtMostC is how hot food that holds water gets at most wherever it stands lowest, °C.
-func boilsAtMostC(h *model.History) float64 {
-	most := math.Inf(1)
-	for i := range h.Spans {
-		if i == 0 || h.Spans[i].Step.AltitudeM != h.Spans[i-1].Step.AltitudeM {
-			most = min(most, model.BoilsAtMostC(h.Spans[i].Step.AltitudeM))
-		}
-	}
-	return most
+	return asked+max(*f.MarginK, 0)+2*h.ErrorK+belowK < h.BoilsAtMostC()
 }

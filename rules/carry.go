@@ -13,12 +13,12 @@ const CarryOver = "only by carry-over"
 // NoCarryOver is the key of the caution on a limit that would be met only so, and from a dry surface of moist food, which is not counted.
 const NoCarryOver = "carry-over not counted"
 
-// carryOver judges a met hold, table or lethality again with the heating stages alone; where it is not met there, the finding says
+// carryOver judges a met hold, table, lethality or heating within a time again with the heating stages alone; where it is not met there, the finding says
 // so in numbers: what the slowest place had when it left the heat, and what it rose to. Of moist food that stands open in air, calculated
 // without the water that it loses, what comes after the heating is not counted: the finding is that of the heating alone.
 func (v *view) carryOver(f *Finding) {
 	l := v.l
-	heated := l.Kind == Hold && l.ToC == nil || l.Kind == HoldTable || l.Kind == Lethality
+	heated := l.Kind == Hold && l.ToC == nil || l.Kind == HoldTable || l.Kind == Lethality || l.Kind == HeatWithin
 	if f.Verdict != Met || !heated || same(l.Where.Name, "medium") {
 		return
 	}
@@ -42,17 +42,24 @@ func (v *view) carryOver(f *Finding) {
 	if g.Verdict == Met || g.Place == nil {
 		return
 	}
-	counts := newView(l, v.c)
+	whole := *l
+	if len(l.Stages) == 0 {
+		whole.Stages = slices.DeleteFunc(slices.Clone(stages), func(s *model.Stage) bool { return len(v.within([]*model.Stage{s})) == 0 })
+	}
+	counts := newView(&whole, v.c)
 	if counts.stages = v.counted(); len(counts.stages) == 0 { // it is about the rest only, and nothing of that counts
 		counts = newView(&hot, v.c)
 	}
 	without := l.Kind.judge(counts)
-	says, moist, after := v.rose(w, &g, without.Verdict == Met)
+	says, moist, left, after := v.rose(w, &g, without.Verdict == Met)
 	switch {
 	case says == "":
 	case without.Verdict != Met:
 		*f = without
 		f.Limit = l
+		if l.Kind == HeatWithin { // it was reached after the last stage that counts, whatever stages are named
+			f.Why = left
+		}
 		f.Notes = append(f.Notes, says+". "+say("carry-over not counted", nil))
 		f.Cautions = append(f.Cautions, NoCarryOver)
 	case !v.h.Recorded && !v.enclosed(after):
@@ -110,8 +117,8 @@ func (f *Finding) carriedOver(says string) {
 }
 
 // rose says what the slowest place had at the end of a heating, and the highest that it came to before the next one, what
-// water does to that, and when it was; counts tells whether that counts. Of several heatings it is the one after which the place became warmest.
-func (v *view) rose(hot *view, g *Finding, counts bool) (says, moist string, after interval) {
+// water does to that, in a sentence of its own what it had, and when it was; counts tells whether that counts. Of several heatings it is the one after which the place became warmest.
+func (v *view) rose(hot *view, g *Finding, counts bool) (says, moist, had string, after interval) {
 	p := v.c.path(*g.Place, interval{0, v.c.end})
 	left, rose, from := math.NaN(), math.Inf(-1), interval{}
 	for i, iv := range hot.stages {
@@ -130,7 +137,7 @@ func (v *view) rose(hot *view, g *Finding, counts bool) (says, moist string, aft
 		}
 	}
 	if math.IsNaN(left) {
-		return "", "", from
+		return "", "", "", from
 	}
 	l := v.l
 	h := holes{"met": say("carried", nil), "slow": say("slow place", holes{"place": g.PlaceName}), "left": l.degrees(left, -1), "rose": l.degrees(rose, -1)}
@@ -149,7 +156,7 @@ func (v *view) rose(hot *view, g *Finding, counts bool) (says, moist string, aft
 	if rose < left+0.05 {
 		key = "carry-over kept"
 	}
-	return say(key, h), say(key+" moist", nil), from
+	return say(key, h), say(key+" moist", nil), say("carry-over left", h), from
 }
 
 // enclosed tells whether the first step of a stretch needs no word on evaporation: its wet surface is calculated, or it is covered.

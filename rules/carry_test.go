@@ -40,15 +40,22 @@ func TestCarryOverOfMoistFood(t *testing.T) {
 				t.Fatal(err)
 			}
 			l := Limit{Name: "L", Kind: Hold, FromC: c(55), TimeS: c(0), Counting: Total, Stages: st(model.Cook, model.Rest), Applies: Applies{All: true}}
-			f := Judge([]Limit{l}, nil, Subject{Product: "P", History: h}).Findings[0]
-			if f.Verdict != x.verdict || !strings.Contains(strings.Join(f.Notes, "\n"), x.says) {
-				t.Errorf("%v, %q; centre %.1f °C after the cook, %.1f °C later", f.Verdict, f.Notes, h.At(model.Place{}, 5700), h.At(model.Place{}, 7200))
-			}
-			if f.Limit == nil || len(f.Limit.Stages) != 2 {
-				t.Error("the finding is of another limit")
-			}
-			if (f.CarryOver != "") != (f.Verdict == Met) {
-				t.Errorf("carry-over %q of a limit that is %v", f.CarryOver, f.Verdict)
+			within := Limit{Name: "W", Kind: HeatWithin, ToC: c(55), TimeS: c(7200), Clock: Clock{Start: model.Cook}, Stages: l.Stages, Applies: l.Applies}
+			anywhere := within
+			anywhere.Stages = nil
+			for _, f := range Judge([]Limit{l, within, anywhere}, nil, Subject{Product: "P", History: h}).Findings {
+				if f.Verdict != x.verdict || !strings.Contains(strings.Join(f.Notes, "\n"), x.says) {
+					t.Errorf("%s: %v, %q, %q; centre %.1f °C after the cook, %.1f °C later", f.Limit.Kind.Name, f.Verdict, f.Why, f.Notes, h.At(model.Place{}, 5700), h.At(model.Place{}, 7200))
+				}
+				if f.Verdict == NotMet && f.Limit.Kind == HeatWithin && !strings.HasPrefix(f.Why, "As the cook ended, the slowest place (centre) was at 46.") {
+					t.Errorf("heat says %q", f.Why)
+				}
+				if f.Limit == nil || len(f.Limit.Stages) == 1 {
+					t.Error("the finding is of another limit")
+				}
+				if (f.CarryOver != "") != (f.Verdict == Met) {
+					t.Errorf("%s: carry-over %q of a limit that is %v", f.Limit.Kind.Name, f.CarryOver, f.Verdict)
+				}
 			}
 		})
 	}

@@ -142,6 +142,7 @@ var words = map[string]string{
 	"carried":                "Met",
 	"would be carried":       "It would be met",
 	"carry-over not counted": "That is not counted: it was calculated without the water that moist food loses as it stands open in air, which cools it. Type wet or dry in the column Surface of that step, or the cover, for it to be counted",
+	"carry-over left":        "As the {stage} ended, {slow} was at {left}, and what it gains after that is not counted.",
 	"carry-over kept":        "{met} only with the time after the {stage}: {slow} left the {stage} at {left}, and the {stage} alone is not enough",
 	"carry-over kept moist":  "; a moist surface loses heat while standing, so the true food cools faster",
 

@@ -118,6 +118,7 @@ var (
 	stepTwice    = saying{"is there twice in the process {1}; the first is in row {2}", "give each step of a process a name of its own"}
 	noMedium     = saying{"Temperature is missing: {1} needs a Temperature or a Course", "fill one of the two"}
 	bothMedia    = saying{"is given beside the temperature {1}", "keep Temperature or Course, not both"}
+	bothHumid    = saying{"is given beside that of the course {1}", "keep one of them: clear the cell, or the column Relative humidity of the course"}
 	mediumUnused = saying{"is given, but {1} has no temperature", "clear the cell"}
 	columnUnused = saying{"is given, but {1} does not use {2}", "clear the cell or choose other surroundings"}
 	columnNeeded = saying{"{1} is missing: {2} needs it", "{3}"}

@@ -306,6 +306,9 @@ func (r *reader) exposure(l *Line, x *model.Exposure, durationS float64) *course
 	}
 	c := r.medium(l, x, durationS)
 	x.FilmW, x.AirMS, x.RH = l.Number("Film coefficient"), l.Number("Air speed"), l.Number("Relative humidity")
+	if x.RH != nil && x.Medium.RH != nil {
+		l.Fault("Relative humidity", l.Entry("Relative humidity").Text, bothHumid, l.Words("Course"))
+	}
 	x.RadiatingC, x.Emissivity = l.Number("Radiating temperature"), l.Number("Emissivity")
 	x.WrapM2KW = l.Number("Wrap resistance")
 	if w := l.Choice("Surface"); w != "" {
