@@ -51,6 +51,10 @@ func TestHotterThanBoiling(t *testing.T) {
 		}
 	}
 	h := solve(false, 0)
+	kills := Limit{Name: "L", Kind: Lethality, ReferenceC: c(70), ZK: c(7.5), TimeS: min_(2), Applies: all, Stages: st(model.Cook)}
+	if f, g := Find([]Limit{kills}, Subject{Product: "P", History: h})[0], judgeOne(&kills, newCourses(h.WhileItBoils())); *f.Value < 1e6**g.Value || *f.MarginS != *g.MarginS || *f.MarginK != *g.MarginK {
+		t.Errorf("lethality %g min with room of %g s and %g K; counted to boiling %g min, %g s, %g K", *f.Value, *f.MarginS, *f.MarginK, *g.Value, *g.MarginS, *g.MarginK)
+	}
 	most := h.At(model.Place{UpM: 0.01}, 3600)
 	f := Find([]Limit{warm}, Subject{Product: "P", History: h})[0]
 	if least := model.BoilsAtMostC(0) - 75; most < 150 || *f.MarginK > least+1e-9 || *f.MarginK < least-h.ErrorK-0.01 {

@@ -7,7 +7,8 @@ import (
 	"slowpoint/model"
 )
 
-// judgeHot judges a limit by a history, and where it asks for heat and is met, by no more of that than food gets which holds water.
+// judgeHot judges a limit by a history, and where it asks for heat and is met, by no more of that than food gets which holds water: for the room that
+// is left, and whether it can be told. What was reached is told as calculated.
 func judgeHot(l *Limit, c *courses) Finding {
 	f := judgeOne(l, c)
 	if f.Verdict != Met || !l.wantsHeat() || l.countsBelow(&f, c.h) {
@@ -24,10 +25,8 @@ func judgeHot(l *Limit, c *courses) Finding {
 	}
 	g, most := judgeOne(l, c.boils), l.degrees(model.BoilsAtMostC(c.h.Spans[0].Step.AltitudeM), 1)
 	if g.Verdict == Met {
-		if !f.Same(&g) {
-			g.noteOnce(say("note boils", holes{"most": most}))
-		}
-		return g
+		f.lessRoom(&g, say("note boils", holes{"most": most}))
+		return f
 	}
 	f.open(say("boils", holes{"met": strings.TrimSuffix(f.Why, "."), "most": most, "less": strings.TrimSuffix(g.Why, ".")}))
 	return f

@@ -61,15 +61,19 @@ func (l *Limit) takes(side model.Drift, h *model.History) bool {
 // met in both, it has the lesser room of both, in temperature and in time; missed in the other, it cannot be told.
 func (f *Finding) drifted(g *Finding) {
 	if g.Verdict == Met || g.Verdict == NotApplicable {
-		note := say("note margin drift", nil)
-		f.narrowed(g, note)
-		if f.Verdict == Met && g.Verdict == Met && f.MarginS != nil && g.MarginS != nil && *g.MarginS < *f.MarginS-tieS {
-			f.MarginS = g.MarginS
-			f.noteOnce(note)
-		}
+		f.lessRoom(g, say("note margin drift", nil))
 		return
 	}
 	f.open(say("drift", holes{"met": strings.TrimSuffix(f.Why, "."), "fast": strings.TrimSuffix(g.Why, ".")}))
+}
+
+// lessRoom takes the margins of another run in which the limit is met as well, where those are smaller. The note says so.
+func (f *Finding) lessRoom(g *Finding, note string) {
+	f.narrowed(g, note)
+	if f.Verdict == Met && g.Verdict == Met && f.MarginS != nil && g.MarginS != nil && *g.MarginS < *f.MarginS-tieS {
+		f.MarginS = g.MarginS
+		f.noteOnce(note)
+	}
 }
 
 // open makes a finding one that cannot be told.

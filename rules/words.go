@@ -152,7 +152,7 @@ var words = map[string]string{
 	"note margin place": "The margin in temperature is that of another place ({place}).",
 	"drift":             "{met}; but that rests on what the plan leaves blank of Radiating temperature, Film coefficient, Surface and Relative humidity in this step and those before: with walls as warm or as cold as the air, films of air a quarter higher, a high film of water and moisture as unfavourable as it may be, {fast}. So it cannot be told.",
 	"boils":             "{met}; but that rests on food hotter than {most}, and food that holds water does not get so hot inside while it boils off. Counted to there at most: {less}. So it cannot be told.",
-	"note boils":        "Temperatures above {most} are counted as that: food that holds water does not get hotter inside while it boils off.",
+	"note boils":        "Temperatures above {most} are counted as that in the room: food that holds water does not get hotter inside while it boils off.",
 	"drift unsolved":    "{met}; but that rests on what the plan leaves blank of Radiating temperature, Film coefficient, Surface and Relative humidity, and with that taken unfavourably it cannot be calculated: {why}. So it cannot be told.",
 	"note margin drift": "The margin counts what the plan leaves blank as unfavourably as it may be: walls as warm or as cold as the air, films of air a quarter higher, films of water high, and moisture.",
 	"note margin run":   "The margin in temperature is that of another of the runs.",
